@@ -1,0 +1,60 @@
+// The catalogue of parts: memories and the logic around them, each value with its source. Data: src/catalogue/parts.yaml.
+#ifndef SCANLATCH_CATALOGUE_CATALOGUE_H
+#define SCANLATCH_CATALOGUE_CATALOGUE_H
+
+#include <stdbool.h>
+#include <stddef.h>
+
+#include "base/diagnostics.h"
+#include "base/fraction.h"
+
+struct arena;
+struct node;
+
+struct access_grade {
+	struct fraction access_s;
+	const char *source;
+};
+
+// A parallel memory.
+struct part {
+	const char *name;
+	unsigned address_pins;   // 1 … 26
+	unsigned data_pins;      // 8 or 16
+	const char *package;     // "" if not known
+	const struct access_grade *grades; // fastest first
+	size_t grade_count;
+	const char *source;      // of organisation and package
+};
+
+enum logic_kind { LOGIC_LATCH, LOGIC_COUNTER, LOGIC_DECODER };
+
+// A latch, counter or decoder: its worst-case times.
+struct logic_part {
+	const char *name;
+	enum logic_kind kind;
+	struct fraction delay_s;      // clock (or address) to output
+	struct fraction setup_s;      // 0 for a decoder
+	const char *conditions;       // supply and temperature of the values
+	const char *delay_source;
+	const char *setup_source;     // "" for a decoder
+};
+
+struct catalogue {
+	const struct part *parts;
+	size_t part_count;
+	const struct logic_part *logic;
+	size_t logic_count;
+};
+
+// Loads the built-in catalogue into the arena; NULL if memory is out or (our own fault) the data is bad, with diagnostics.
+const struct catalogue *catalogue_load(struct arena *arena, struct diagnostics *diagnostics);
+
+// The part of a name (exact), or NULL. Cannot fail.
+const struct part *catalogue_part(const struct catalogue *catalogue, const char *name);
+const struct logic_part *catalogue_logic(const struct catalogue *catalogue, const char *name);
+
+// Bytes of a part's whole capacity. Cannot fail.
+size_t part_bytes(const struct part *part);
+
+#endif

@@ -1,0 +1,23 @@
+// The bytes of each chip, whole capacity.
+#ifndef SCANLATCH_IMAGE_IMAGE_H
+#define SCANLATCH_IMAGE_IMAGE_H
+
+#include "base/diagnostics.h"
+#include "table/wiring.h"
+
+struct arena;
+struct table;
+
+struct image {
+	uint8_t *bytes;    // 16-bit parts: low byte first
+	size_t length;     // capacity
+};
+
+// Fills images[chip_count] in the arena from a table (maker's side). False when memory is out.
+bool images_fill(const struct table *table, struct arena *arena, struct image *images);
+
+// CRC-32 and 16-bit sum (sum of all bytes mod 65536). Cannot fail.
+uint32_t image_crc32(const struct image *image);
+uint16_t image_sum16(const struct image *image);
+
+#endif

@@ -1,0 +1,31 @@
+// The simulator: latches, counters, EEPROM chips and their wires. It knows nothing of what plans mean: no lines, regions or
+// roles. Independent of the maker: it reads bytes through the wires.
+#ifndef SCANLATCH_MACHINE_MACHINE_H
+#define SCANLATCH_MACHINE_MACHINE_H
+
+#include "image/image.h"
+#include "table/wiring.h"
+
+struct machine;
+
+// A machine of the given wiring with the given chip images (wiring.chip_count of them, of the chips' capacity), its jumpers
+// set to `bank`. Images must outlive it. NULL when memory is out.
+struct machine *machine_create(struct arena *arena, const struct wiring *wiring, const struct image *images, uint32_t bank);
+
+// What the EEPROMs answer at a state. Cannot fail for state < 2^state_bits. Open address pins read as low.
+struct row machine_row(const struct machine *machine, uint32_t state);
+
+// The state after the next clock edge. With an async clear, a state whose row asserts clear falls to 0 at once, before it is a
+// cell of its own: machine_settle gives the state that a counter value settles to, and machine_next the settled state after the edge
+// that ends a settled state's cell. Should clear be asserted at state 0 too, the counter stays at 0.
+uint32_t machine_settle(const struct machine *machine, uint32_t state);
+uint32_t machine_next(const struct machine *machine, uint32_t state);
+
+// A chip's byte (or 16-bit word's two bytes) that a state reads: the byte address in the chip's image of its low byte. For messages. Cannot fail.
+size_t machine_address(const struct machine *machine, uint32_t state, size_t chip);
+
+// Fills next[0 … 2^state_bits - 1] with machine_next of every (settled) state, in one linear pass: much faster than calling
+// machine_next for each. Cannot fail.
+void machine_all_next(const struct machine *machine, uint32_t *next, size_t stride_words);
+
+#endif

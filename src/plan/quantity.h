@@ -1,0 +1,54 @@
+// Numbers, quantities, bit ranges and truth values, read exactly from a scalar's text.
+#ifndef SCANLATCH_PLAN_QUANTITY_H
+#define SCANLATCH_PLAN_QUANTITY_H
+
+#include <stdbool.h>
+#include <stdint.h>
+
+#include "base/fraction.h"
+
+enum dimension {
+	DIMENSION_FREQUENCY, // value in hertz
+	DIMENSION_TIME,      // value in seconds
+	DIMENSION_TICKS,
+	DIMENSION_DOTS,
+	DIMENSION_CELLS,
+	DIMENSION_LINES,
+	DIMENSION_BITS,
+	DIMENSION_PPM,
+};
+
+struct quantity {
+	struct fraction value;
+	enum dimension dimension;
+};
+
+enum quantity_status {
+	QUANTITY_OK,
+	QUANTITY_MALFORMED,   // not NUMBER[/NUMBER] UNIT
+	QUANTITY_NO_UNIT,     // a number without a unit
+	QUANTITY_UNKNOWN_UNIT,
+	QUANTITY_OVERFLOW,    // does not fit a 64-bit fraction
+};
+
+// Reads `[-]NUMBER[/NUMBER] UNIT`, NUMBER being DIGITS[.DIGITS]; spaces around "/" and before the unit are free, but the
+// unit may also follow the number at once. Units: Hz kHz MHz, s ms us ns, tick(s) dot(s) cell(s) line(s) bit(s) ppm.
+// Division by zero is QUANTITY_MALFORMED. *result is set only on QUANTITY_OK.
+enum quantity_status quantity_parse(const char *text, struct quantity *result);
+
+// What a status means, as words for a diagnostic ("a number needs a unit"). Cannot fail.
+const char *quantity_status_words(enum quantity_status status);
+
+// The names of the units of a dimension, for messages ("Hz, kHz or MHz"). Cannot fail.
+const char *dimension_units(enum dimension dimension);
+
+// Reads a whole number, decimal or 0x…, unsigned, no sign and no spaces, all of text. False if malformed or above 2^63-1.
+bool whole_number_parse(const char *text, int64_t *result);
+
+// Reads "hi..lo" or "n" (decimal, each at most 1000) with hi >= lo. False if malformed.
+bool bit_range_parse(const char *text, unsigned *high, unsigned *low);
+
+// Reads exactly "true" or "false".
+bool truth_parse(const char *text, bool *result);
+
+#endif

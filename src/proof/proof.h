@@ -1,0 +1,166 @@
+// The proofs of design page 1.7: from image bytes, against the timeline. One file for each proof; this header has their results.
+// The prover shares with the maker only the timeline and the wiring.
+#ifndef SCANLATCH_PROOF_PROOF_H
+#define SCANLATCH_PROOF_PROOF_H
+
+#include "image/image.h"
+#include "layout/timeline.h"
+
+enum proof_kind {
+	PROOF_CLOSURE,
+	PROOF_SIGNALS,
+	PROOF_COLOUR,
+	PROOF_POWER_UP,
+	PROOF_UPSET,
+	PROOF_GLITCHES,
+	PROOF_SPEED,
+	PROOF_SWEEP,
+	PROOF_COUNT
+};
+
+enum verdict {
+	VERDICT_PASS,
+	VERDICT_FAIL,
+	VERDICT_ABSENT,   // nothing to prove: the plan does not ask
+};
+
+// The name of a proof as page 1.7 has it ("power-up"). Cannot fail.
+const char *proof_name(enum proof_kind kind);
+// True for closure, signals, colour, power-up and sweep: if one fails, the images are wrong.
+bool proof_is_must(enum proof_kind kind);
+
+// Where an image byte is: for counterexamples.
+struct byte_place {
+	size_t chip;
+	size_t address;        // chip address (for 16-bit parts the word address), as device programmers show it
+	uint32_t value;        // the byte or word that is there
+};
+
+// A counterexample: everything that a person at a bench needs.
+struct counterexample {
+	bool present;
+	uint32_t bank;
+	uint32_t cell;         // index in the frame
+	uint32_t state;        // the state whose row was read when the fault came about
+	size_t signal;         // of a pin fault; SIZE_MAX if none
+	bool byte_known;
+	struct byte_place byte;
+	const char *what;      // what went wrong, in words, with expected and found
+};
+
+struct closure_result {
+	uint32_t lines, cells;
+	int64_t ticks;
+	uint32_t period_cells;     // cells of the frame that the states run through once
+	uint32_t start_state;
+};
+
+struct signals_result {
+	uint64_t comparisons;      // F × signals, over all banks
+	uint64_t held_comparisons; // cells whose held bits were compared
+};
+
+struct colour_result {
+	bool uniform;              // every line has the same number of cycles
+	struct fraction cycles_per_line;   // of the first line
+	struct fraction cycles_per_frame;
+	bool repeats_known;        // false if the figures do not fit 64 bits
+	int64_t repeats_lines;     // the phase at line starts repeats after this many lines
+	int64_t repeats_frames;
+};
+
+struct power_up_result {
+	uint64_t states;           // examined, over all banks
+	uint32_t frame_states;
+	uint32_t longest_cells;    // the longest way to a state of the frame
+	struct fraction longest_lines; // cells / mean cells of a line
+	uint32_t longest_state;
+	uint32_t longest_bank;
+	uint64_t lost_states;      // states that never reach the frame
+	uint32_t second_loop_state;// one state of a second loop, if lost_states > 0
+	uint32_t second_loop_cells;
+};
+
+struct upset_result {
+	uint64_t upsets;           // frame states × bits
+	uint32_t worst_cells;      // until the frame is regained
+	uint32_t worst_cell;       // frame cell of that upset
+	unsigned worst_bit;
+	struct fraction mean_cells;
+	uint32_t worst_slip_cells; // absolute, the shorter way round the period
+	struct fraction worst_slip_lines;
+	struct fraction mean_slip_cells;
+	uint32_t worst_slip_cell;
+	unsigned worst_slip_bit;
+};
+
+struct glitch_edge {
+	size_t signal;
+	uint32_t cell;             // the edge that begins this cell
+	uint32_t from_state, to_state;
+	uint32_t from_code, to_code;
+	uint32_t between_code;     // a code that may show in between
+	uint64_t count;            // how many edges of the frame disturb this signal
+};
+
+struct glitch_result {
+	bool has_field_signals;
+	uint64_t edges;            // examined
+	uint64_t multi_bit_edges;  // more than one bit of some decoded field changes
+	struct glitch_edge *first; // for each disturbed signal its first edge
+	size_t disturbed;
+	bool direct;               // data outputs are direct
+	struct fraction unsettled_s; // for direct outputs: latch or counter delay + access time
+	const char *unsettled_part;  // label of the slowest chip
+};
+
+struct speed_result {
+	struct fraction cell_s;        // shortest cell
+	struct fraction available_s;   // share × cell
+	struct fraction delay_s, access_s, setup_s, margin_s;
+	bool second_pass;              // async clear: delay and access are paid twice
+	struct fraction needed_s;
+	struct fraction slack_s;       // available - needed; negative fails
+	size_t slowest_chip;
+};
+
+struct sweep_result {
+	uint64_t values;               // that must come up
+	uint64_t missing;              // that never do
+	uint32_t first_missing;
+	struct fraction worst_gap_s;   // longest time between two uses of a value
+	uint32_t worst_value;
+	struct fraction within_s;
+};
+
+struct proof {
+	enum verdict verdict;
+	struct counterexample counterexample;
+};
+
+struct proofs {
+	struct arena *arena;
+	const struct timeline *timeline;
+	uint32_t banks;                          // proved: 2^bank_bits
+	struct proof proof[PROOF_COUNT];
+	struct closure_result closure;
+	struct signals_result signals;
+	struct colour_result colour;
+	struct power_up_result power_up;
+	struct upset_result upset;
+	struct glitch_result glitches;
+	struct speed_result speed;
+	struct sweep_result *sweeps;             // [plan->sweep_count]
+	const uint32_t **codes;                  // [signal_count]: codes of FROM_FIELD signals; for codes: auto, as read out of the images
+	size_t *code_counts;
+};
+
+// Proves images (one for each chip of the plan, of its capacity) against a timeline. `start_state` is the plan's start where it has one (or
+// 0 for a counter); otherwise pass has_start false and the prover finds the frame itself: see frame_find. NULL when memory is out.
+struct proofs *proofs_run(const struct timeline *timeline, const struct image *images, bool has_start, uint32_t start_state);
+void proofs_destroy(struct proofs *proofs);
+
+// True if a must failed (or, with strict, any proof). Cannot fail.
+bool proofs_failed(const struct proofs *proofs, bool strict);
+
+#endif
