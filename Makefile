@@ -1,0 +1,135 @@
+# Builds scanlatch. `make help` lists the targets. Everything built goes under $(BUILD).
+#
+#   CC, CFLAGS, LDFLAGS   as usual; CFLAGS replaces only "-O2 -g", never the language and warning flags
+#   WERROR=1              warnings are errors
+#   BUILD=FOLDER          build there, so that builds of different kinds stand side by side
+#   FOLDER=base           let `check` run only tests/base
+#   PREFIX, DESTDIR       where `install` puts things
+#   NO_INSTALL=1          never install packages; GET_PACKAGES=: leaves the question of packages to you
+
+ifneq ($(filter check-sanitize,$(MAKECMDGOALS)),)
+ifneq ($(words $(MAKECMDGOALS)),1)
+$(error check-sanitize builds with flags of its own: run it alone)
+endif
+SANITIZE = -fsanitize=address,undefined -fno-sanitize-recover=all -fno-omit-frame-pointer
+BUILD ?= build/sanitize
+endif
+
+BUILD ?= build
+FOLDER ?= *
+CFLAGS ?= -O2 -g
+PREFIX ?= /usr/local
+GET_PACKAGES ?= tools/get-packages
+
+PACKAGE_FLAGS := $(shell pkg-config --cflags yaml-0.1 jansson 2>/dev/null)
+PACKAGE_LIBRARIES := $(shell pkg-config --libs yaml-0.1 jansson 2>/dev/null || echo -lyaml -ljansson)
+
+WARNINGS = -Wall -Wextra -Wpedantic -Wconversion -Wshadow -Wstrict-prototypes -Wmissing-prototypes \
+	-Wcast-qual -Wwrite-strings -Wundef -Wvla $(if $(filter 1,$(WERROR)),-Werror)
+FLAGS = -std=c11 -D_POSIX_C_SOURCE=200809L $(WARNINGS) -Isrc -Iinclude -I$(BUILD)/generated \
+	$(PACKAGE_FLAGS) $(CPPFLAGS) $(CFLAGS) $(SANITIZE)
+LIBRARIES = $(PACKAGE_LIBRARIES) -lz
+
+PROGRAM = $(BUILD)/scanlatch
+LIBRARY = $(BUILD)/libscanlatch.a
+CATALOGUE_DATA = $(BUILD)/generated/catalogue_data.c
+
+CATALOGUES = $(wildcard src/catalogue/*.yaml)
+SOURCES = $(wildcard src/*/*.c src/*.c)
+PROGRAM_SOURCES = $(filter src/command/%,$(SOURCES))
+LIBRARY_SOURCES = $(filter-out src/command/%,$(SOURCES))
+PROGRAM_OBJECTS = $(PROGRAM_SOURCES:src/%.c=$(BUILD)/obj/%.o)
+LIBRARY_OBJECTS = $(LIBRARY_SOURCES:src/%.c=$(BUILD)/obj/%.o) $(BUILD)/obj/generated/catalogue_data.o
+
+TEST_PROGRAMS = $(patsubst tests/%.c,$(BUILD)/tests/%,$(wildcard tests/$(FOLDER)/test_*.c))
+TEST_SCRIPTS = $(wildcard tests/$(FOLDER)/*.sh)
+BENCH_PROGRAMS = $(patsubst tools/%.c,$(BUILD)/%,$(wildcard tools/bench/*.c))
+FUZZ_PROGRAMS = $(patsubst tools/%.c,$(BUILD)/%,$(wildcard tools/fuzz/*.c))
+CLIENTS = $(TEST_PROGRAMS) $(BENCH_PROGRAMS) $(FUZZ_PROGRAMS)
+
+# Only these goals may install packages; then nothing is compiled before the packages are there.
+PACKAGE_SETS = $(if $(filter demo check check-sanitize bench fuzz,$(MAKECMDGOALS)),build) \
+	$(if $(filter check check-sanitize,$(MAKECMDGOALS)),test) $(if $(filter bench,$(MAKECMDGOALS)),bench)
+PACKAGES = $(if $(strip $(PACKAGE_SETS)),packages)
+
+.PHONY: all demo check check-sanitize bench fuzz install clean help packages FORCE
+.DELETE_ON_ERROR:
+.SUFFIXES:
+
+all: $(PROGRAM) $(LIBRARY)
+
+help:
+	@echo 'make                 build $(PROGRAM) and $(LIBRARY)'
+	@echo 'make demo            build the images of a demo plan into $(BUILD)/demo and print the proofs'
+	@echo 'make check           run all tests'
+	@echo 'make check-sanitize  run all tests with address and undefined-behaviour sanitizers'
+	@echo 'make bench           measure speed'
+	@echo 'make fuzz            feed the program random plans and images for a while'
+	@echo 'make install         install under PREFIX ($(PREFIX)); DESTDIR is honoured'
+	@echo 'make clean           remove $(BUILD)'
+	@echo 'Variables: CC CFLAGS LDFLAGS WERROR=1 BUILD=FOLDER FOLDER=base PREFIX DESTDIR NO_INSTALL=1'
+
+packages:
+	@$(GET_PACKAGES) $(PACKAGE_SETS)
+
+$(PROGRAM): $(PROGRAM_OBJECTS) $(LIBRARY)
+	$(CC) $(FLAGS) $(LDFLAGS) -o $@ $(PROGRAM_OBJECTS) $(LIBRARY) $(LIBRARIES)
+
+# From scratch, so that no member outlives its source.
+$(LIBRARY): $(LIBRARY_OBJECTS) $(BUILD)/members
+	rm -f $@
+	$(AR) rcs $@ $(LIBRARY_OBJECTS)
+
+$(BUILD)/obj/%.o: src/%.c $(BUILD)/flags | $(PACKAGES)
+	@mkdir -p $(@D)
+	$(CC) $(FLAGS) -MMD -MP -c -o $@ $<
+
+$(BUILD)/obj/generated/%.o: $(BUILD)/generated/%.c $(BUILD)/flags | $(PACKAGES)
+	@mkdir -p $(@D)
+	$(CC) $(FLAGS) -MMD -MP -c -o $@ $<
+
+# Each catalogue as an array of its bytes, a NUL after them, and its length without the NUL.
+$(CATALOGUE_DATA): $(CATALOGUES)
+	@mkdir -p $(@D)
+	{ echo '#include "catalogue/data.h"'; \
+	for file in $(CATALOGUES); do \
+		name=$$(basename "$$file" .yaml | tr - _); \
+		echo "const unsigned char catalogue_$$name[] = {"; \
+		od -An -v -tx1 "$$file" | sed 's/ *\([0-9a-f][0-9a-f]\)/0x\1,/g'; \
+		echo "0x00};"; \
+		echo "const size_t catalogue_$${name}_length = sizeof catalogue_$$name - 1;"; \
+	done; } > $@
+
+$(TEST_PROGRAMS): CLIENT_LIBRARIES = -lcmocka
+$(TEST_PROGRAMS): $(BUILD)/tests/%: tests/%.c
+$(BENCH_PROGRAMS) $(FUZZ_PROGRAMS): $(BUILD)/%: tools/%.c
+$(CLIENTS): $(LIBRARY) $(BUILD)/flags | $(PACKAGES)
+	@mkdir -p $(@D)
+	$(CC) $(FLAGS) -MMD -MP -MF $@.d $(LDFLAGS) -o $@ $(filter %.c,$^) $(LIBRARY) $(CLIENT_LIBRARIES) $(LIBRARIES)
+
+# What was compiled last time, so that other flags or a vanished source lead to a new build.
+$(BUILD)/flags: export STAMP = $(CC) $(FLAGS)
+$(BUILD)/members: export STAMP = $(LIBRARY_OBJECTS)
+$(BUILD)/flags $(BUILD)/members: FORCE
+	@mkdir -p $(@D)
+	@printf '%s\n' "$$STAMP" | cmp -s - $@ || printf '%s\n' "$$STAMP" > $@
+
+demo: $(PROGRAM) | $(PACKAGES)
+	$(PROGRAM) build plans/tide-board-60.yaml -o $(BUILD)/demo
+
+check check-sanitize: $(PROGRAM) $(TEST_PROGRAMS) | $(PACKAGES)
+	@SCANLATCH='$(PROGRAM)' BUILD='$(BUILD)' CC='$(CC)' tools/run-tests $(TEST_PROGRAMS) $(TEST_SCRIPTS)
+
+bench: $(PROGRAM) $(BENCH_PROGRAMS) | $(PACKAGES)
+	@SCANLATCH='$(PROGRAM)' BUILD='$(BUILD)' tools/bench/run
+
+fuzz: $(PROGRAM) $(FUZZ_PROGRAMS) | $(PACKAGES)
+	@SCANLATCH='$(PROGRAM)' BUILD='$(BUILD)' tools/fuzz/run
+
+install: $(PROGRAM) $(LIBRARY)
+	tools/install-files '$(PROGRAM)' '$(LIBRARY)' '$(DESTDIR)' '$(PREFIX)'
+
+clean:
+	rm -rf $(BUILD)
+
+-include $(PROGRAM_OBJECTS:.o=.d) $(LIBRARY_OBJECTS:.o=.d) $(CLIENTS:=.d)
