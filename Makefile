@@ -19,6 +19,7 @@ BUILD ?= build
 FOLDER ?= *
 CFLAGS ?= -O2 -g
 PREFIX ?= /usr/local
+INSTALLED = $(DESTDIR)$(PREFIX)
 GET_PACKAGES ?= tools/get-packages
 
 PACKAGE_FLAGS := $(shell pkg-config --cflags yaml-0.1 jansson 2>/dev/null)
@@ -126,8 +127,25 @@ bench: $(PROGRAM) $(BENCH_PROGRAMS) | $(PACKAGES)
 fuzz: $(PROGRAM) $(FUZZ_PROGRAMS) | $(PACKAGES)
 	@SCANLATCH='$(PROGRAM)' BUILD='$(BUILD)' tools/fuzz/run
 
-install: $(PROGRAM) $(LIBRARY)
-	tools/install-files '$(PROGRAM)' '$(LIBRARY)' '$(DESTDIR)' '$(PREFIX)'
+install: $(PROGRAM) $(LIBRARY) $(BUILD)/scanlatch.pc
+	install -d '$(INSTALLED)/bin' '$(INSTALLED)/lib/pkgconfig' '$(INSTALLED)/include/scanlatch' \
+		'$(INSTALLED)/share/man/man1' '$(INSTALLED)/share/bash-completion/completions'
+	install -m 755 $(PROGRAM) '$(INSTALLED)/bin/scanlatch'
+	install -m 644 $(LIBRARY) '$(INSTALLED)/lib/libscanlatch.a'
+	install -m 644 $(BUILD)/scanlatch.pc '$(INSTALLED)/lib/pkgconfig/scanlatch.pc'
+	install -m 644 include/scanlatch/scanlatch.h '$(INSTALLED)/include/scanlatch/scanlatch.h'
+	install -m 644 src/command/scanlatch.1 '$(INSTALLED)/share/man/man1/scanlatch.1'
+	install -m 644 src/command/scanlatch.bash-completion '$(INSTALLED)/share/bash-completion/completions/scanlatch'
+
+# The library is static, so that whoever links it links what it uses.
+$(BUILD)/scanlatch.pc: include/scanlatch/scanlatch.h FORCE
+	@mkdir -p $(@D)
+	@version=$$(sed -n 's/^#define SCANLATCH_VERSION "\([^"]*\)"$$/\1/p' $<); \
+	test -n "$$version" || { echo 'error: $< defines no SCANLATCH_VERSION' >&2; exit 1; }; \
+	printf '%s\n' 'prefix=$(PREFIX)' 'includedir=$${prefix}/include' 'libdir=$${prefix}/lib' '' 'Name: scanlatch' \
+		'Description: fills the EEPROMs of raster sequencers and proves their images' \
+		"Version: $$version" 'Requires: yaml-0.1 jansson zlib' \
+		'Cflags: -I$${includedir}' 'Libs: -L$${libdir} -lscanlatch' > $@
 
 clean:
 	rm -rf $(BUILD)
