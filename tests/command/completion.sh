@@ -1,0 +1,53 @@
+#!/bin/bash
+# What bash completion offers, and that program, completion and manual page know the same commands and options.
+set -u
+. tests/report.sh
+. src/command/scanlatch.bash-completion
+
+# Only a running completion may call the real one.
+compopt() { :; }
+
+# offered WORD …: what is offered for the last word, one a line, sorted.
+offered() {
+	COMP_WORDS=(scanlatch "$@")
+	COMP_CWORD=$#
+	_scanlatch
+	printf '%s\n' "${COMPREPLY[@]}" | sort
+}
+
+root=$PWD
+folder=$(mktemp -d) || exit 1
+trap 'rm -rf "$folder"' EXIT
+cd "$folder" || exit 1
+touch tide.yaml tide.yml tide.txt tide.rom0.bin tide.rom0.hex 'two words.yaml'
+mkdir images
+
+same 'commands' $'build\ncheck\nlist\nprove' "$(offered '')"
+same 'a command begun' 'prove' "$(offered pr)"
+same 'plans and folders' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered check '')"
+same 'images too, to be proved' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yaml\ntide.yml\ntwo words.yaml' \
+	"$(offered prove tide.yaml '')"
+same 'a blank in a name' 'two words.yaml' "$(offered check tw)"
+same 'folders to write to' 'images' "$(offered build tide.yaml -o '')"
+same 'the same for the long option' 'images' "$(offered build tide.yaml --output '')"
+same 'formats' $'bin\nbin,hex\nhex' "$(offered build --format '')"
+same 'record lengths' $'16\n32' "$(offered build --record '')"
+same 'colours' $'always\nauto\nnever' "$(offered check --color '')"
+same 'catalogues' 'parts' "$(offered list '')"
+same 'options before a command' $'--help\n--version' "$(offered -)"
+same 'an option begun' '--unproven' "$(offered build --u)"
+same 'options after arguments' '--strict' "$(offered check tide.yaml --s)"
+same 'nothing that is not there' '' "$(offered check x)"
+
+cd "$root" || exit 1
+long_options='(^|[^-A-Za-z])--[a-z]+(-[a-z]+)*'
+page=$(sed 's/\\-/-/g; s/\\f.//g' src/command/scanlatch.1)
+for command in check build prove list; do
+	options=$("$SCANLATCH" "$command" --help | grep -oE -- "$long_options" | grep -oE -- '--[a-z-]+' | sort -u)
+	same "$command: completion offers the options that its help names" "$options" "$(offered "$command" --)"
+	for option in $options; do
+		holds "the manual page explains $option" grep -qE "^\.(B|BI|BR) .*$option( |\$)" <<<"$page"
+	done
+done
+
+finish
