@@ -107,7 +107,8 @@ check_bad() {
 # A case breaks the rule that it is named after, and no other.
 check_bad_name() {
 	local name=$1 rules
-	rules=$(rules_in "$work/bad/$name.stderr" 2>/dev/null)
+	[ -e "$work/bad/$name.stderr" ] || return
+	rules=$(rules_in "$work/bad/$name.stderr")
 	case $name in
 	several-*) holds "$name breaks several rules" test "$(wc -l <<<"$rules")" -gt 1 ;;
 	*) case $name- in

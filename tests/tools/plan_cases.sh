@@ -145,7 +145,6 @@ same 'bad plans that are not right' 'FAILED: bad/lost.exit belongs to no case
 FAILED: bad-bits: exit status 0, wanted 2
 FAILED: bad-code crashed, status 134
 FAILED: bad-name: no bad-name.stderr (tools/expect-bad writes it for you to read)
-FAILED: bad-name breaks another rule than its name says:
 FAILED: hold-value crashed, status 99
 FAILED: like-loop breaks another rule than its name says:
 FAILED: line-length: stderr
