@@ -24,6 +24,7 @@ struct catalogue;
 #define LIMIT_DATA_PINS 16
 #define LIMIT_BANK_BITS 8
 #define LIMIT_FIELDS 24
+#define LIMIT_REGIONS 1000000 // over all line types, derived ones included
 #define LIMIT_LEAD_CELLS 1000000
 #define LIMIT_CELL_TICKS 1000000
 

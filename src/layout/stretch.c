@@ -1,0 +1,86 @@
+#include "layout/layout.h"
+
+#include <inttypes.h>
+
+// The line lengths that meet a phase of N lines are the multiples of this many ticks: N × length × (subcarrier / master) is whole.
+// 0 if the numbers do not fit.
+static int64_t closing_ticks(const struct clock *clock)
+{
+	struct fraction cycles_per_tick;
+	if (!fraction_divide(clock->subcarrier_hz, clock->master_hz, &cycles_per_tick))
+		return 0;
+	return cycles_per_tick.denominator / greatest_common_divisor(cycles_per_tick.denominator, clock->phase_count);
+}
+
+static bool may_stretch(const struct plan *plan, const struct line_type *line, const struct laid_line *laid, uint32_t cell)
+{
+	const uint64_t stretch = (uint64_t)1 << plan->role_signal[ROLE_STRETCH];
+	return line->regions[laid->region_of_cell[cell]].stretch == STRETCH_AUTO && (laid->asserted[cell] & stretch) == 0;
+}
+
+static const struct region *first_auto_region(const struct line_type *line)
+{
+	for (size_t index = 0; index < line->region_count; index++)
+		if (line->regions[index].stretch == STRETCH_AUTO)
+			return &line->regions[index];
+	return NULL;
+}
+
+static bool report_unreachable(struct layout *layout, size_t type, const struct region *region, uint32_t available, int64_t closing)
+{
+	const struct laid_line *laid = &layout->types[type];
+	const struct clock *clock = &layout->plan->clock;
+	const int64_t longest = laid->ticks + available * clock->stretch_ticks;
+	const int64_t below = laid->ticks / closing * closing;
+	const int64_t above = below + closing;
+	diagnose(layout->diagnostics, RULE_PHASE_UNREACHABLE, region->stretch_place,
+	         "line type \"%s\" has %" PRId64 " ticks, up to %" PRId64 " with %u stretched cells of %" PRId64
+	         " ticks more, and none of these lengths meets the phase",
+	         layout->plan->lines[type].name, laid->ticks, longest, available, clock->stretch_ticks);
+	diagnose_also(layout->diagnostics, clock->phase_place, "the phase that is asked");
+	if (below > 0)
+		diagnose_hint(layout->diagnostics, "line lengths of %" PRId64 " or %" PRId64 " ticks would, as any multiple of %" PRId64 " does", below,
+		              above, closing);
+	else
+		diagnose_hint(layout->diagnostics, "a line length of %" PRId64 " ticks would, as any multiple of it does", above);
+	return false;
+}
+
+static void stretch_leftmost(struct layout *layout, size_t type, uint32_t count)
+{
+	struct laid_line *laid = &layout->types[type];
+	const struct line_type *line = &layout->plan->lines[type];
+	const uint64_t stretch = (uint64_t)1 << layout->plan->role_signal[ROLE_STRETCH];
+	laid->auto_stretched = count;
+	for (uint32_t cell = 0; count > 0; cell++) {
+		if (!may_stretch(layout->plan, line, laid, cell))
+			continue;
+		laid->asserted[cell] |= stretch;
+		count--;
+	}
+}
+
+bool layout_auto_stretch(struct layout *layout, size_t type)
+{
+	const struct plan *plan = layout->plan;
+	const struct line_type *line = &plan->lines[type];
+	const struct laid_line *laid = &layout->types[type];
+	const struct region *region = first_auto_region(line);
+	if (region == NULL)
+		return true;
+	const int64_t closing = closing_ticks(&plan->clock);
+	if (closing == 0) {
+		diagnose(layout->diagnostics, RULE_BAD_QUANTITY, plan->clock.place, "the subcarrier divided by the master clock needs numbers beyond 64 bits");
+		return false;
+	}
+	uint32_t available = 0;
+	for (uint32_t cell = 0; cell < laid->cells; cell++)
+		available += may_stretch(plan, line, laid, cell);
+	for (uint32_t count = 0; count <= available; count++) {
+		if ((laid->ticks + count * plan->clock.stretch_ticks) % closing != 0)
+			continue;
+		stretch_leftmost(layout, type, count);
+		return true;
+	}
+	return report_unreachable(layout, type, region, available, closing);
+}

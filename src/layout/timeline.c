@@ -1,0 +1,198 @@
+#include "layout/layout.h"
+
+#include <string.h>
+
+#include "base/arena.h"
+
+static bool report_memory(const struct plan *plan, struct diagnostics *diagnostics)
+{
+	diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){plan->source, 0, 0}, "memory is out");
+	return false;
+}
+
+static bool lay_types(struct timeline *timeline, struct diagnostics *diagnostics)
+{
+	const struct plan *plan = timeline->plan;
+	timeline->types = arena_array(timeline->arena, plan->line_count, sizeof *timeline->types);
+	if (timeline->types == NULL)
+		return report_memory(plan, diagnostics);
+	struct layout layout = {timeline->arena, plan, diagnostics, timeline->types, 0};
+	bool good = true;
+	for (size_t type = 0; type < plan->line_count; type++)
+		good = layout_regions(&layout, type) && layout_cells(&layout, type) && good;
+	return good;
+}
+
+// Counts lines and cells of the frame; reports a frame that is too large.
+static bool measure_frame(struct timeline *timeline, struct diagnostics *diagnostics)
+{
+	const struct plan *plan = timeline->plan;
+	int64_t lines = 0, cells = 0;
+	for (size_t index = 0; index < plan->block_count; index++) {
+		const struct block *block = &plan->blocks[index];
+		lines += block->repeat;
+		cells += block->repeat * timeline->types[block->line_type].cells;
+		if (cells <= LIMIT_CELLS)
+			continue;
+		diagnose(diagnostics, RULE_FRAME_SIZE, block->place, "the frame has more than %d cells", LIMIT_CELLS);
+		return false;
+	}
+	timeline->line_count = (uint32_t)lines;
+	timeline->cell_count = (uint32_t)cells;
+	return true;
+}
+
+static void lay_line(struct timeline *timeline, struct frame_line *line)
+{
+	const struct laid_line *type = &timeline->types[line->type];
+	line->first_cell = timeline->cell_count;
+	line->first_tick = timeline->tick_count;
+	memcpy(timeline->asserted + line->first_cell, type->asserted, type->cells * sizeof *type->asserted);
+	timeline->cell_count += type->cells;
+	timeline->tick_count += type->ticks;
+}
+
+static bool lay_frame(struct timeline *timeline, struct diagnostics *diagnostics)
+{
+	const struct plan *plan = timeline->plan;
+	timeline->lines = arena_array(timeline->arena, timeline->line_count, sizeof *timeline->lines);
+	timeline->asserted = arena_array(timeline->arena, timeline->cell_count, sizeof *timeline->asserted);
+	if (timeline->lines == NULL || timeline->asserted == NULL)
+		return report_memory(plan, diagnostics);
+	struct frame_line *line = timeline->lines;
+	timeline->cell_count = 0;
+	for (size_t block = 0; block < plan->block_count; block++)
+		for (uint32_t row = 0; row < plan->blocks[block].repeat; row++, line++) {
+			line->type = (uint32_t)plan->blocks[block].line_type;
+			line->block = (uint32_t)block;
+			line->row = row;
+			lay_line(timeline, line);
+		}
+	return true;
+}
+
+struct timeline *timeline_create(const struct plan *plan, struct diagnostics *diagnostics)
+{
+	struct arena *arena = arena_create();
+	struct timeline *timeline = arena != NULL ? arena_alloc(arena, sizeof *timeline) : NULL;
+	if (timeline == NULL) {
+		report_memory(plan, diagnostics);
+		arena_destroy(arena);
+		return NULL;
+	}
+	timeline->arena = arena;
+	timeline->plan = plan;
+	if (lay_types(timeline, diagnostics) && measure_frame(timeline, diagnostics) && lay_frame(timeline, diagnostics) &&
+	    layout_holds(timeline, diagnostics))
+		return timeline;
+	arena_destroy(arena);
+	return NULL;
+}
+
+void timeline_destroy(struct timeline *timeline)
+{
+	if (timeline != NULL)
+		arena_destroy(timeline->arena);
+}
+
+// pins[i] |= asserted[(i + lead) mod count] & mask, for all i.
+static void put_led(const struct timeline *timeline, uint64_t *pins, int64_t lead, uint64_t mask)
+{
+	const int64_t count = timeline->cell_count;
+	const uint32_t shift = (uint32_t)(((lead % count) + count) % count);
+	const uint32_t first = timeline->cell_count - shift;
+	for (uint32_t cell = 0; cell < first; cell++)
+		pins[cell] |= timeline->asserted[cell + shift] & mask;
+	for (uint32_t cell = first; cell < timeline->cell_count; cell++)
+		pins[cell] |= timeline->asserted[cell - first] & mask;
+}
+
+uint64_t *timeline_pins(const struct timeline *timeline, struct arena *arena)
+{
+	const struct plan *plan = timeline->plan;
+	uint64_t *pins = arena_array(arena, timeline->cell_count, sizeof *pins);
+	uint64_t done = 0;
+	if (pins == NULL)
+		return NULL;
+	for (size_t signal = 0; signal < plan->signal_count; signal++) {
+		uint64_t mask = 0;
+		for (size_t other = signal; other < plan->signal_count; other++)
+			if (plan->signals[other].lead_cells == plan->signals[signal].lead_cells)
+				mask |= (uint64_t)1 << other;
+		mask &= ~done;
+		if (mask != 0)
+			put_led(timeline, pins, plan->signals[signal].lead_cells, mask);
+		done |= mask;
+	}
+	return pins;
+}
+
+uint64_t levels_of(const struct plan *plan, uint64_t asserted)
+{
+	uint64_t inverted = 0;
+	for (size_t signal = 0; signal < plan->signal_count; signal++)
+		if (!plan->signals[signal].active_high)
+			inverted |= (uint64_t)1 << signal;
+	return asserted ^ inverted;
+}
+
+struct cell_place timeline_place(const struct timeline *timeline, uint32_t cell)
+{
+	uint32_t low = 0, high = timeline->line_count - 1;
+	while (low < high) {
+		const uint32_t middle = low + (high - low + 1) / 2;
+		if (timeline->lines[middle].first_cell <= cell)
+			low = middle;
+		else
+			high = middle - 1;
+	}
+	const struct frame_line *line = &timeline->lines[low];
+	const uint32_t in_line = cell - line->first_cell;
+	return (struct cell_place){low, in_line, timeline->types[line->type].region_of_cell[in_line]};
+}
+
+const char *timeline_line_name(const struct timeline *timeline, uint32_t cell)
+{
+	return timeline->plan->lines[timeline->lines[timeline_place(timeline, cell).line].type].name;
+}
+
+const struct region *timeline_region(const struct timeline *timeline, uint32_t cell)
+{
+	const struct cell_place place = timeline_place(timeline, cell);
+	return &timeline->plan->lines[timeline->lines[place.line].type].regions[place.region];
+}
+
+const char *timeline_region_name(const struct timeline *timeline, uint32_t cell)
+{
+	return timeline_region(timeline, cell)->name;
+}
+
+static bool cells_equal(const struct timeline *timeline, uint32_t left, uint32_t right)
+{
+	return timeline->asserted[left] == timeline->asserted[right] &&
+	       (!timeline->has_holds || (timeline->hold_mask[left] == timeline->hold_mask[right] &&
+	                                 timeline->hold_value[left] == timeline->hold_value[right]));
+}
+
+// The failure function of Knuth, Morris and Pratt (1977): the longest proper border of the frame gives its shortest period.
+uint32_t timeline_period(const struct timeline *timeline)
+{
+	const uint32_t count = timeline->cell_count;
+	struct arena *arena = arena_create();
+	uint32_t *border = arena != NULL ? arena_array(arena, count, sizeof *border) : NULL;
+	uint32_t period = 0;
+	if (border != NULL) {
+		uint32_t length = 0;
+		for (uint32_t cell = 1; cell < count; cell++) {
+			while (length > 0 && !cells_equal(timeline, cell, length))
+				length = border[length - 1];
+			length += cells_equal(timeline, cell, length);
+			border[cell] = length;
+		}
+		period = count - border[count - 1];
+		if (count % period != 0)
+			period = count;
+	}
+	arena_destroy(arena);
+	return period;
+}

@@ -1,0 +1,403 @@
+#include "plan/read.h"
+
+#include <string.h>
+
+#include "base/arena.h"
+#include "plan/expression.h"
+
+enum { REGION_NAME, REGION_CELLS, REGION_TIME, REGION_FILL, REGION_ASSERT, REGION_STRETCH, REGION_HOLD, REGION_KEYS };
+
+static const struct key region_keys[REGION_KEYS] = {
+	[REGION_NAME] = {"region", KEY_REQUIRED},   [REGION_CELLS] = {"cells", KEY_OPTIONAL},
+	[REGION_TIME] = {"time", KEY_OPTIONAL},     [REGION_FILL] = {"fill", KEY_OPTIONAL},
+	[REGION_ASSERT] = {"assert", KEY_OPTIONAL}, [REGION_STRETCH] = {"stretch", KEY_OPTIONAL},
+	[REGION_HOLD] = {"hold", KEY_OPTIONAL},
+};
+
+enum { LINE_CELLS, LINE_REGIONS, LINE_LIKE, LINE_CHANGE, LINE_KEYS };
+
+static const struct key line_keys[LINE_KEYS] = {
+	[LINE_CELLS] = {"cells", KEY_OPTIONAL},
+	[LINE_REGIONS] = {"regions", KEY_OPTIONAL},
+	[LINE_LIKE] = {"like", KEY_OPTIONAL},
+	[LINE_CHANGE] = {"change", KEY_OPTIONAL},
+};
+
+// A line type while `like` is being resolved: its values, and how far it is.
+struct pending_line {
+	const struct node *values[LINE_KEYS];
+	size_t like;          // index of the type it derives from; SIZE_MAX if none
+	bool good;            // its mapping could be read
+	enum { WAITING, OPEN, DONE } progress;
+};
+
+static void read_region_time(struct reader *reader, const struct node *node, struct region *region)
+{
+	const unsigned allowed = 1u << DIMENSION_TIME | 1u << DIMENSION_TICKS | 1u << DIMENSION_DOTS | 1u << DIMENSION_CELLS;
+	const struct clock *clock = &reader->plan->clock;
+	struct quantity quantity;
+	if (!read_quantity(reader, node, "time", allowed, &quantity) || !reader->clock_known)
+		return;
+	struct fraction unit = fraction_whole(1);
+	if (quantity.dimension == DIMENSION_TIME)
+		unit = clock->master_hz;
+	else if (quantity.dimension == DIMENSION_DOTS)
+		unit = fraction_whole(clock->dot_ticks);
+	else if (quantity.dimension == DIMENSION_CELLS)
+		unit = fraction_whole(clock->cell_ticks);
+	struct fraction ticks;
+	const bool fits = fraction_multiply(quantity.value, unit, &ticks);
+	if (!fits || ticks.numerator <= 0 || fraction_floor(ticks) / clock->cell_ticks >= LIMIT_CELLS) {
+		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "time: wanted more than nothing and at most %d cells, found \"%s\"",
+		         LIMIT_CELLS, node->text);
+		return;
+	}
+	region->ticks = ticks;
+}
+
+static void read_region_length(struct reader *reader, const struct node *node, const struct node **values, struct region *region)
+{
+	const int given = (values[REGION_CELLS] != NULL) + (values[REGION_TIME] != NULL) + (values[REGION_FILL] != NULL);
+	if (given > 1) {
+		diagnose(reader->diagnostics, RULE_REGION_LENGTH, node->place, "region \"%s\" has %d lengths, wanted one of cells, time and fill",
+		         region->name, given);
+		return;
+	}
+	if (values[REGION_CELLS] != NULL) {
+		region->length = LENGTH_CELLS;
+		region->length_place = values[REGION_CELLS]->place;
+		read_whole(reader, values[REGION_CELLS], "cells", 1, LIMIT_CELLS, &region->cells);
+	} else if (values[REGION_TIME] != NULL) {
+		region->length = LENGTH_TIME;
+		region->length_place = values[REGION_TIME]->place;
+		read_region_time(reader, values[REGION_TIME], region);
+	} else if (values[REGION_FILL] != NULL) {
+		bool fill = true;
+		region->length = LENGTH_FILL;
+		region->length_place = values[REGION_FILL]->place;
+		if (read_truth(reader, values[REGION_FILL], "fill", &fill) && !fill) {
+			diagnose(reader->diagnostics, RULE_REGION_LENGTH, values[REGION_FILL]->place,
+			         "region \"%s\" has fill: false and so no length", region->name);
+			diagnose_hint(reader->diagnostics, "give it cells or time, or fill: true");
+		}
+	}
+}
+
+static void read_assert(struct reader *reader, const struct node *node, struct region *region)
+{
+	const struct plan *plan = reader->plan;
+	region->assert_mask = 0;
+	if (!expect_kind(reader, node, NODE_LIST, "assert"))
+		return;
+	for (size_t index = 0; index < node->count; index++) {
+		const char *name;
+		if (!read_scalar(reader, node->items[index], "assert", &name))
+			continue;
+		const size_t signal = find_signal(plan, name);
+		if (signal == SIZE_MAX) {
+			const char *names[LIMIT_SIGNALS];
+			for (size_t other = 0; other < plan->signal_count; other++)
+				names[other] = plan->signals[other].name;
+			diagnose(reader->diagnostics, RULE_UNKNOWN_SIGNAL, node->items[index]->place, "there is no signal \"%s\"", name);
+			hint_words(reader, name, names, plan->signal_count);
+			continue;
+		}
+		if ((region->assert_mask >> signal & 1) != 0)
+			diagnose(reader->diagnostics, RULE_DOUBLED_NAME, node->items[index]->place, "signal \"%s\" is listed twice", name);
+		region->assert_mask |= (uint64_t)1 << signal;
+	}
+}
+
+static void read_stretch(struct reader *reader, const struct node *node, struct region *region)
+{
+	const struct plan *plan = reader->plan;
+	const char *text;
+	region->stretch = STRETCH_COUNT;
+	region->stretch_cells = 0;
+	region->stretch_place = node->place;
+	if (!read_scalar(reader, node, "stretch", &text))
+		return;
+	if (strcmp(text, "auto") == 0)
+		region->stretch = STRETCH_AUTO;
+	else if (!read_whole(reader, node, "stretch (or auto)", 0, LIMIT_CELLS, &region->stretch_cells))
+		return;
+	if (region->stretch == STRETCH_COUNT && region->stretch_cells == 0)
+		return;
+	if (reader->signals_known && plan->role_signal[ROLE_STRETCH] < 0) {
+		diagnose(reader->diagnostics, RULE_STRETCH_WITHOUT_SIGNAL, node->place,
+		         "region \"%s\" has stretched cells, but no signal has role stretch", region->name);
+		diagnose_hint(reader->diagnostics, "add a signal such as stretch: { role: stretch, active: low }");
+	}
+	if (region->stretch == STRETCH_AUTO && reader->clock_known &&
+	    (!plan->clock.has_subcarrier || plan->clock.phase != PHASE_LINES)) {
+		diagnose(reader->diagnostics, RULE_STRETCH_AUTO, node->place,
+		         "stretch: auto needs a subcarrier and a phase counted in lines, which the clock does not have");
+		diagnose_hint(reader->diagnostics, "add subcarrier and phase: every line (or every N lines) to clock, or say how many cells");
+	}
+}
+
+static bool read_hold(struct reader *reader, const struct node *field, const struct node *value, struct hold *hold)
+{
+	const struct plan *plan = reader->plan;
+	size_t offset = 0;
+	if (!read_scalar(reader, value, "hold", &hold->text))
+		return false;
+	hold->place = value->place;
+	const enum expression_status status = expression_compile(reader->arena, hold->text, &hold->expression, &offset);
+	if (status != EXPRESSION_OK) {
+		diagnose(reader->diagnostics, status == EXPRESSION_MEMORY ? RULE_OUT_OF_MEMORY : RULE_BAD_EXPRESSION, value->place,
+		         "expression \"%s\": %s at \"%s\"", hold->text, expression_status_words(status),
+		         hold->text[offset] == '\0' ? "its end" : hold->text + offset);
+		if (status == EXPRESSION_UNKNOWN_VARIABLE)
+			diagnose_hint(reader->diagnostics, "the variables are line, cell, col and row");
+	}
+	if (!reader->machine_known)
+		return false;
+	hold->field = find_field(plan, field->text);
+	if (hold->field != SIZE_MAX)
+		return status == EXPRESSION_OK;
+	const char *names[LIMIT_FIELDS];
+	for (size_t index = 0; index < plan->machine.field_count; index++)
+		names[index] = plan->machine.fields[index].name;
+	diagnose(reader->diagnostics, RULE_UNKNOWN_FIELD, field->place, "the machine has no field \"%s\"", field->text);
+	hint_words(reader, field->text, names, plan->machine.field_count);
+	return false;
+}
+
+static void read_holds(struct reader *reader, const struct node *node, struct region *region)
+{
+	region->holds = NULL;
+	region->hold_count = 0;
+	if (!expect_kind(reader, node, NODE_MAPPING, "hold"))
+		return;
+	struct hold *holds = reader_array(reader, node->count, sizeof *holds);
+	if (holds == NULL)
+		return;
+	size_t count = 0;
+	for (size_t pair = 0; pair < node->count; pair++)
+		if (read_hold(reader, node->pairs[pair].key, node->pairs[pair].value, &holds[count]))
+			count++;
+	region->holds = holds;
+	region->hold_count = count;
+}
+
+// Reads the keys that a region or a change gives, over what the region has already.
+static void read_region_keys(struct reader *reader, const struct node *node, const struct node **values, struct region *region)
+{
+	region->place = node->place;
+	read_region_length(reader, node, values, region);
+	if (values[REGION_ASSERT] != NULL)
+		read_assert(reader, values[REGION_ASSERT], region);
+	if (values[REGION_STRETCH] != NULL)
+		read_stretch(reader, values[REGION_STRETCH], region);
+	if (values[REGION_HOLD] != NULL)
+		read_holds(reader, values[REGION_HOLD], region);
+}
+
+static void read_region(struct reader *reader, const struct node *node, struct region *region)
+{
+	const struct node *values[REGION_KEYS];
+	region->name = "";
+	region->cells = 1;
+	region->ticks = fraction_whole(1);
+	region->place = region->length_place = region->stretch_place = node->place;
+	if (!read_mapping(reader, node, "a region", region_keys, REGION_KEYS, values))
+		return;
+	if (values[REGION_NAME] != NULL && expect_kind(reader, values[REGION_NAME], NODE_SCALAR, "region") &&
+	    check_printable_name(reader, values[REGION_NAME], "region"))
+		region->name = values[REGION_NAME]->text;
+	if (values[REGION_CELLS] == NULL && values[REGION_TIME] == NULL && values[REGION_FILL] == NULL) {
+		diagnose(reader->diagnostics, RULE_REGION_LENGTH, node->place, "region \"%s\" has no length", region->name);
+		diagnose_hint(reader->diagnostics, "give it one of cells: N, time: T and fill: true");
+	}
+	read_region_keys(reader, node, values, region);
+}
+
+// An array of regions for a line type, or NULL after reporting that there are too many in all.
+static struct region *make_regions(struct reader *reader, size_t count, struct place place)
+{
+	if (count > LIMIT_REGIONS - reader->region_count) {
+		diagnose(reader->diagnostics, RULE_TOO_MANY, place, "regions: wanted at most %d in all line types, found more", LIMIT_REGIONS);
+		return NULL;
+	}
+	reader->region_count += count;
+	return reader_array(reader, count, sizeof(struct region));
+}
+
+static void read_regions(struct reader *reader, const struct node *node, struct line_type *line)
+{
+	if (!expect_kind(reader, node, NODE_LIST, "regions"))
+		return;
+	if (node->count == 0 || node->count > UINT16_MAX) {
+		diagnose(reader->diagnostics, RULE_TOO_MANY, node->place, "regions: wanted 1 to %d, found %zu", UINT16_MAX, node->count);
+		return;
+	}
+	line->regions = make_regions(reader, node->count, node->place);
+	if (line->regions == NULL)
+		return;
+	line->region_count = node->count;
+	for (size_t index = 0; index < node->count; index++)
+		read_region(reader, node->items[index], &line->regions[index]);
+}
+
+// The region of a name in a line type, or NULL after reporting.
+static struct region *changed_region(struct reader *reader, const struct node *name, const struct line_type *line)
+{
+	struct region *found = NULL;
+	for (size_t index = 0; index < line->region_count; index++) {
+		struct region *region = &line->regions[index];
+		if (strcmp(region->name, name->text) != 0)
+			continue;
+		if (found != NULL) {
+			diagnose(reader->diagnostics, RULE_AMBIGUOUS_REGION, name->place, "region \"%s\" exists more than once in line type \"%s\"",
+			         name->text, line->name);
+			diagnose_also(reader->diagnostics, region->place, "region \"%s\"", name->text);
+			diagnose_hint(reader->diagnostics, "give the regions different names, or write the line type out");
+			return NULL;
+		}
+		found = region;
+	}
+	if (found != NULL || line->region_count == 0)
+		return found;
+	const char *names[64];
+	const size_t count = line->region_count < COUNT_OF(names) ? line->region_count : COUNT_OF(names);
+	for (size_t index = 0; index < count; index++)
+		names[index] = line->regions[index].name;
+	diagnose(reader->diagnostics, RULE_UNKNOWN_REGION, name->place, "line type \"%s\" has no region \"%s\" to change", line->name,
+	         name->text);
+	hint_words(reader, name->text, names, count);
+	return NULL;
+}
+
+static void read_changes(struct reader *reader, const struct node *node, struct line_type *line)
+{
+	if (!expect_kind(reader, node, NODE_LIST, "change"))
+		return;
+	for (size_t index = 0; index < node->count; index++) {
+		const struct node *values[REGION_KEYS];
+		if (!read_mapping(reader, node->items[index], "a change", region_keys, REGION_KEYS, values) || values[REGION_NAME] == NULL ||
+		    !expect_kind(reader, values[REGION_NAME], NODE_SCALAR, "region"))
+			continue;
+		struct region *region = changed_region(reader, values[REGION_NAME], line);
+		if (region != NULL)
+			read_region_keys(reader, node->items[index], values, region);
+	}
+}
+
+static bool copy_regions(struct reader *reader, const struct line_type *from, struct line_type *line)
+{
+	line->regions = make_regions(reader, from->region_count, line->place);
+	if (line->regions == NULL)
+		return false;
+	if (from->region_count > 0)
+		memcpy(line->regions, from->regions, from->region_count * sizeof *line->regions);
+	line->region_count = from->region_count;
+	line->has_cells = from->has_cells;
+	line->cells = from->cells;
+	line->cells_place = from->cells_place;
+	return true;
+}
+
+static void read_line_cells(struct reader *reader, const struct node *node, struct line_type *line)
+{
+	if (node == NULL || !read_whole(reader, node, "cells", 1, LIMIT_CELLS, &line->cells))
+		return;
+	line->has_cells = true;
+	line->cells_place = node->place;
+}
+
+// Reads a line type whose base, if it has one, is done.
+static void read_line(struct reader *reader, struct pending_line *pending, size_t index)
+{
+	struct line_type *line = &reader->plan->lines[index];
+	const struct node **values = pending[index].values;
+	pending[index].progress = DONE;
+	if (!pending[index].good)
+		return;
+	if (pending[index].like != SIZE_MAX && !copy_regions(reader, &reader->plan->lines[pending[index].like], line))
+		return;
+	read_line_cells(reader, values[LINE_CELLS], line);
+	if (values[LINE_REGIONS] != NULL)
+		read_regions(reader, values[LINE_REGIONS], line);
+	if (values[LINE_CHANGE] != NULL && values[LINE_LIKE] != NULL)
+		read_changes(reader, values[LINE_CHANGE], line);
+}
+
+// Follows `like` from a line type to one that can be read, then reads them on the way back; no recursion.
+static void read_line_chain(struct reader *reader, struct pending_line *pending, size_t first, size_t *chain)
+{
+	size_t length = 0, index = first;
+	while (index != SIZE_MAX && pending[index].progress == WAITING) {
+		pending[index].progress = OPEN;
+		chain[length++] = index;
+		index = pending[index].like;
+	}
+	if (index != SIZE_MAX && pending[index].progress == OPEN) {
+		const struct node *like = pending[chain[length - 1]].values[LINE_LIKE];
+		diagnose(reader->diagnostics, RULE_LIKE_LOOP, like->place, "line type \"%s\" derives from itself through \"like: %s\"",
+		         reader->plan->lines[index].name, like->text);
+		pending[chain[length - 1]].good = false;
+	}
+	while (length > 0)
+		read_line(reader, pending, chain[--length]);
+}
+
+static void read_line_head(struct reader *reader, const struct node *node, struct pending_line *pending)
+{
+	const struct plan *plan = reader->plan;
+	const struct node **values = pending->values;
+	pending->like = SIZE_MAX;
+	pending->good = read_mapping(reader, node, "a line type", line_keys, LINE_KEYS, values);
+	if (!pending->good)
+		return;
+	if ((values[LINE_REGIONS] == NULL) == (values[LINE_LIKE] == NULL)) {
+		diagnose(reader->diagnostics, RULE_MISSING_KEY, node->place, "a line type needs either \"regions\" or \"like\"%s",
+		         values[LINE_LIKE] != NULL ? ", not both" : "");
+		pending->good = false;
+	} else if (values[LINE_CHANGE] != NULL && values[LINE_LIKE] == NULL) {
+		diagnose(reader->diagnostics, RULE_MISSING_KEY, values[LINE_CHANGE]->place, "\"change\" needs \"like\"");
+		pending->good = false;
+	}
+	const char *name;
+	if (!pending->good || values[LINE_LIKE] == NULL)
+		return;
+	pending->good = read_scalar(reader, values[LINE_LIKE], "like", &name);
+	for (size_t index = 0; pending->good && index < plan->line_count; index++)
+		if (strcmp(plan->lines[index].name, name) == 0)
+			pending->like = index;
+	if (!pending->good || pending->like != SIZE_MAX)
+		return;
+	const char *names[64];
+	const size_t count = plan->line_count < COUNT_OF(names) ? plan->line_count : COUNT_OF(names);
+	for (size_t index = 0; index < count; index++)
+		names[index] = plan->lines[index].name;
+	diagnose(reader->diagnostics, RULE_UNKNOWN_LINE, values[LINE_LIKE]->place, "there is no line type \"%s\"", name);
+	hint_words(reader, name, names, count);
+	pending->good = false;
+}
+
+void read_lines(struct reader *reader, const struct node *node)
+{
+	struct plan *plan = reader->plan;
+	if (!expect_kind(reader, node, NODE_MAPPING, "lines"))
+		return;
+	if (node->count == 0) {
+		diagnose(reader->diagnostics, RULE_MISSING_KEY, node->place, "lines: wanted at least one line type, found none");
+		return;
+	}
+	plan->lines = reader_array(reader, node->count, sizeof *plan->lines);
+	struct pending_line *pending = reader_array(reader, node->count, sizeof *pending);
+	size_t *chain = reader_array(reader, node->count, sizeof *chain);
+	if (plan->lines == NULL || pending == NULL || chain == NULL)
+		return;
+	plan->line_count = node->count;
+	for (size_t index = 0; index < node->count; index++) {
+		plan->lines[index].name = node->pairs[index].key->text;
+		plan->lines[index].place = plan->lines[index].cells_place = node->pairs[index].key->place;
+		check_printable_name(reader, node->pairs[index].key, "line type");
+	}
+	for (size_t index = 0; index < node->count; index++)
+		read_line_head(reader, node->pairs[index].value, &pending[index]);
+	for (size_t index = 0; index < node->count; index++)
+		read_line_chain(reader, pending, index, chain);
+}

@@ -1,0 +1,118 @@
+#include "plan/read.h"
+
+#include <string.h>
+
+#include "base/text.h"
+#include "plan/expression.h"
+
+#define NAME_CHARACTERS 40
+#define IDENTIFIER_CHARACTERS 40
+#define WORD_BYTES 48
+
+static const char *const reserved_words[] = {"state", "next", "kind", "bank", "step", "clear", "low", "high"};
+
+static bool is_reserved(const char *name)
+{
+	for (size_t index = 0; index < COUNT_OF(reserved_words); index++)
+		if (strcmp(reserved_words[index], name) == 0)
+			return true;
+	for (unsigned variable = 0; variable < VARIABLE_COUNT; variable++)
+		if (strcmp(variable_name((enum variable)variable), name) == 0)
+			return true;
+	return false;
+}
+
+bool check_identifier(struct reader *reader, const struct node *node, const char *what)
+{
+	const char *text = node->text;
+	bool good = text[0] >= 'a' && text[0] <= 'z' && node->length <= IDENTIFIER_CHARACTERS;
+	for (size_t index = 0; good && index < node->length; index++)
+		good = (text[index] >= 'a' && text[index] <= 'z') || (text[index] >= '0' && text[index] <= '9') || text[index] == '_';
+	if (!good) {
+		diagnose(reader->diagnostics, RULE_BAD_NAME, node->place,
+		         "%s \"%s\": wanted a lower-case letter, then lower-case letters, digits and _, at most %d in all", what, text,
+		         IDENTIFIER_CHARACTERS);
+		return false;
+	}
+	if (is_reserved(text)) {
+		diagnose(reader->diagnostics, RULE_RESERVED_NAME, node->place, "%s \"%s\": the plan language uses this name itself", what,
+		         text);
+		return false;
+	}
+	return true;
+}
+
+bool check_printable_name(struct reader *reader, const struct node *node, const char *what)
+{
+	size_t characters = 0;
+	bool good = node->length > 0;
+	for (size_t index = 0; good && index < node->length; index++) {
+		const unsigned char byte = (unsigned char)node->text[index];
+		characters += (byte & 0xC0u) != 0x80u;
+		good = byte >= 0x20 && byte != 0x7F && byte != '"' && byte != '\'';
+	}
+	if (good && characters <= NAME_CHARACTERS)
+		return true;
+	diagnose(reader->diagnostics, RULE_BAD_NAME, node->place,
+	         "%s: wanted 1 to %d printable characters without quotes, found %s", what, NAME_CHARACTERS,
+	         node->length == 0 ? "nothing" : good ? "more" : "others");
+	return false;
+}
+
+// Edit distance of two short words (Levenshtein 1966; adjacent transpositions count as one).
+static unsigned edit_distance(const char *left, const char *right)
+{
+	const size_t left_length = strlen(left), right_length = strlen(right);
+	unsigned table[3][WORD_BYTES + 1];
+	if (left_length > WORD_BYTES || right_length > WORD_BYTES)
+		return WORD_BYTES;
+	for (size_t column = 0; column <= right_length; column++)
+		table[0][column] = (unsigned)column;
+	for (size_t row = 1; row <= left_length; row++) {
+		unsigned *now = table[row % 3], *before = table[(row - 1) % 3], *earlier = table[(row + 1) % 3];
+		now[0] = (unsigned)row;
+		for (size_t column = 1; column <= right_length; column++) {
+			const bool same = left[row - 1] == right[column - 1];
+			unsigned best = before[column - 1] + (same ? 0 : 1);
+			best = before[column] + 1 < best ? before[column] + 1 : best;
+			best = now[column - 1] + 1 < best ? now[column - 1] + 1 : best;
+			if (row > 1 && column > 1 && left[row - 1] == right[column - 2] && left[row - 2] == right[column - 1])
+				best = earlier[column - 2] + 1 < best ? earlier[column - 2] + 1 : best;
+			now[column] = best;
+		}
+	}
+	return table[left_length % 3][right_length];
+}
+
+const char *nearest_word(const char *word, const char *const *candidates, size_t count)
+{
+	const char *best = NULL;
+	unsigned best_distance = strlen(word) <= 3 ? 2 : 3;
+	for (size_t index = 0; index < count; index++) {
+		const unsigned distance = edit_distance(word, candidates[index]);
+		if (distance < best_distance) {
+			best = candidates[index];
+			best_distance = distance;
+		}
+	}
+	return best;
+}
+
+void hint_words(struct reader *reader, const char *word, const char *const *candidates, size_t count)
+{
+	const char *near = nearest_word(word, candidates, count);
+	if (near != NULL) {
+		diagnose_hint(reader->diagnostics, "did you mean \"%s\"?", near);
+		return;
+	}
+	if (count == 0)
+		return;
+	struct text list = {0};
+	const size_t shown = count > 16 ? 16 : count;
+	for (size_t index = 0; index < shown; index++)
+		text_printf(&list, "%s%s", index == 0 ? "" : ", ", candidates[index]);
+	if (shown < count)
+		text_printf(&list, " and %zu more", count - shown);
+	diagnose_hint(reader->diagnostics, "there %s: %s", count == 1 ? "is" : "are", text_string(&list));
+	text_release(&list);
+}

@@ -1,0 +1,201 @@
+#include "plan/read.h"
+
+#include <stdlib.h>
+#include <string.h>
+
+#include "base/arena.h"
+
+enum { SIGNAL_ROLE, SIGNAL_ACTIVE, SIGNAL_LEAD, SIGNAL_FROM, SIGNAL_STAGE, SIGNAL_KEYS };
+
+static const struct key signal_keys[SIGNAL_KEYS] = {
+	[SIGNAL_ROLE] = {"role", KEY_REQUIRED}, [SIGNAL_ACTIVE] = {"active", KEY_REQUIRED}, [SIGNAL_LEAD] = {"lead", KEY_OPTIONAL},
+	[SIGNAL_FROM] = {"from", KEY_OPTIONAL}, [SIGNAL_STAGE] = {"stage", KEY_LATER},
+};
+
+enum { FROM_KEY_FIELD, FROM_KEY_CODES, FROM_KEYS };
+
+static const struct key from_keys[FROM_KEYS] = {
+	[FROM_KEY_FIELD] = {"field", KEY_REQUIRED},
+	[FROM_KEY_CODES] = {"codes", KEY_REQUIRED},
+};
+
+static const char *const role_words[ROLE_COUNT] = {
+	[ROLE_PLAIN] = "plain",
+	[ROLE_COMPOSITE_SYNC] = "composite sync",
+	[ROLE_HORIZONTAL_SYNC] = "horizontal sync",
+	[ROLE_VERTICAL_SYNC] = "vertical sync",
+	[ROLE_BLANKING] = "blanking",
+	[ROLE_BURST_GATE] = "burst gate",
+	[ROLE_STRETCH] = "stretch",
+};
+
+const char *role_name(enum role role)
+{
+	return role_words[role];
+}
+
+bool signal_is_data(const struct signal *signal)
+{
+	return signal->origin == FROM_DATA;
+}
+
+static void read_lead(struct reader *reader, const struct node *node, struct signal *signal)
+{
+	struct quantity quantity;
+	if (!read_quantity(reader, node, "lead", 1u << DIMENSION_CELLS, &quantity))
+		return;
+	if (!fraction_is_whole(quantity.value) || llabs(quantity.value.numerator) > LIMIT_LEAD_CELLS) {
+		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place,
+		         "lead: wanted a whole number of cells from -%d to %d, found \"%s\"", LIMIT_LEAD_CELLS, LIMIT_LEAD_CELLS, node->text);
+		return;
+	}
+	signal->lead_cells = quantity.value.numerator;
+}
+
+static int compare_codes(const void *left, const void *right)
+{
+	const uint32_t a = *(const uint32_t *)left, b = *(const uint32_t *)right;
+	return (a > b) - (a < b);
+}
+
+static void read_code_list(struct reader *reader, const struct node *node, struct signal *signal)
+{
+	const struct field *field = &reader->plan->machine.fields[signal->field];
+	const int64_t most = ((int64_t)1 << (field->high - field->low + 1)) - 1;
+	if (node->count == 0) {
+		diagnose(reader->diagnostics, RULE_BAD_CODE, node->place, "codes: wanted at least one code, found none");
+		return;
+	}
+	uint32_t *codes = reader_array(reader, node->count, sizeof *codes);
+	if (codes == NULL)
+		return;
+	for (size_t index = 0; index < node->count; index++) {
+		const struct node *item = node->items[index];
+		int64_t value;
+		const char *text;
+		if (!read_scalar(reader, item, "code", &text))
+			return;
+		if (!whole_number_parse(text, &value) || value > most) {
+			diagnose(reader->diagnostics, RULE_BAD_CODE, item->place, "code: wanted 0 to %lld, which field \"%s\" holds, found \"%s\"",
+			         (long long)most, field->name, text);
+			return;
+		}
+		codes[index] = (uint32_t)value;
+	}
+	qsort(codes, node->count, sizeof *codes, compare_codes);
+	for (size_t index = 1; index < node->count; index++)
+		if (codes[index] == codes[index - 1]) {
+			diagnose(reader->diagnostics, RULE_BAD_CODE, node->place, "codes: code %u is listed twice", (unsigned)codes[index]);
+			return;
+		}
+	signal->codes = codes;
+	signal->code_count = node->count;
+}
+
+static void read_field_origin(struct reader *reader, const struct node *node, struct signal *signal)
+{
+	const struct node *values[FROM_KEYS];
+	const char *name;
+	signal->origin = FROM_FIELD;
+	if (!read_mapping(reader, node, "from", from_keys, FROM_KEYS, values) || values[FROM_KEY_FIELD] == NULL ||
+	    !read_scalar(reader, values[FROM_KEY_FIELD], "field", &name) || !reader->machine_known)
+		return;
+	signal->field = find_field(reader->plan, name);
+	if (signal->field == SIZE_MAX) {
+		const char *names[LIMIT_FIELDS];
+		for (size_t index = 0; index < reader->plan->machine.field_count; index++)
+			names[index] = reader->plan->machine.fields[index].name;
+		diagnose(reader->diagnostics, RULE_UNKNOWN_FIELD, values[FROM_KEY_FIELD]->place, "the machine has no field \"%s\"", name);
+		hint_words(reader, name, names, reader->plan->machine.field_count);
+		signal->field = 0;
+		return;
+	}
+	const struct node *codes = values[FROM_KEY_CODES];
+	if (codes == NULL)
+		return;
+	if (codes->kind == NODE_SCALAR && strcmp(codes->text, "auto") == 0)
+		signal->auto_codes = true;
+	else if (expect_kind(reader, codes, NODE_LIST, "codes (or auto)"))
+		read_code_list(reader, codes, signal);
+}
+
+static void read_origin(struct reader *reader, const struct node *node, struct signal *signal)
+{
+	if (node->kind == NODE_SCALAR && strcmp(node->text, "data") == 0)
+		return;
+	if (node->kind == NODE_MAPPING) {
+		read_field_origin(reader, node, signal);
+		return;
+	}
+	diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "from: wanted data or { field: NAME, codes: [...] }");
+}
+
+static void take_role(struct reader *reader, const struct node *node, size_t index, enum role role)
+{
+	struct plan *plan = reader->plan;
+	plan->signals[index].role = role;
+	if (role == ROLE_PLAIN)
+		return;
+	if (plan->role_signal[role] >= 0) {
+		const struct signal *other = &plan->signals[plan->role_signal[role]];
+		diagnose(reader->diagnostics, RULE_DOUBLED_ROLE, node->place, "signal \"%s\" has role %s, which signal \"%s\" has already",
+		         plan->signals[index].name, role_words[role], other->name);
+		diagnose_also(reader->diagnostics, other->place, "signal \"%s\"", other->name);
+		return;
+	}
+	plan->role_signal[role] = (int)index;
+}
+
+static void read_signal(struct reader *reader, const struct node *node, size_t index)
+{
+	struct signal *signal = &reader->plan->signals[index];
+	const struct node *values[SIGNAL_KEYS];
+	if (!read_mapping(reader, node, "a signal", signal_keys, SIGNAL_KEYS, values))
+		return;
+	size_t choice;
+	if (values[SIGNAL_ROLE] != NULL && read_choice(reader, values[SIGNAL_ROLE], "role", role_words, ROLE_COUNT, &choice))
+		take_role(reader, values[SIGNAL_ROLE], index, (enum role)choice);
+	static const char *const levels[] = {"low", "high"};
+	if (values[SIGNAL_ACTIVE] != NULL && read_choice(reader, values[SIGNAL_ACTIVE], "active", levels, COUNT_OF(levels), &choice))
+		signal->active_high = choice == 1;
+	if (values[SIGNAL_LEAD] != NULL)
+		read_lead(reader, values[SIGNAL_LEAD], signal);
+	if (values[SIGNAL_FROM] != NULL)
+		read_origin(reader, values[SIGNAL_FROM], signal);
+}
+
+static void check_stretch_signal(struct reader *reader)
+{
+	const struct plan *plan = reader->plan;
+	const int index = plan->role_signal[ROLE_STRETCH];
+	if (index < 0 || !reader->clock_known || plan->clock.stretch_ticks > 0)
+		return;
+	diagnose(reader->diagnostics, RULE_STRETCH_WITHOUT_LENGTH, plan->signals[index].place,
+	         "signal \"%s\" has role stretch, but the clock does not say how long a stretch is", plan->signals[index].name);
+	diagnose_hint(reader->diagnostics, "add stretch: N dots (or ticks) to clock");
+}
+
+void read_signals(struct reader *reader, const struct node *node)
+{
+	struct plan *plan = reader->plan;
+	const size_t errors_before = diagnostics_error_count(reader->diagnostics);
+	if (!expect_kind(reader, node, NODE_MAPPING, "signals"))
+		return;
+	if (node->count > LIMIT_SIGNALS) {
+		diagnose(reader->diagnostics, RULE_TOO_MANY, node->place, "signals: wanted at most %d, found %zu", LIMIT_SIGNALS, node->count);
+		return;
+	}
+	plan->signals = reader_array(reader, node->count, sizeof *plan->signals);
+	if (plan->signals == NULL)
+		return;
+	for (size_t index = 0; index < node->count; index++) {
+		const struct node *key = node->pairs[index].key;
+		plan->signals[index].name = key->text;
+		plan->signals[index].place = key->place;
+		plan->signal_count = index + 1;
+		check_identifier(reader, key, "signal");
+		read_signal(reader, node->pairs[index].value, index);
+	}
+	check_stretch_signal(reader);
+	reader->signals_known = diagnostics_error_count(reader->diagnostics) == errors_before;
+}

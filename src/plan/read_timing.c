@@ -1,0 +1,182 @@
+#include "plan/read.h"
+
+#include <string.h>
+
+#include "base/arena.h"
+
+enum {
+	TIMING_LATCH,
+	TIMING_COUNTER,
+	TIMING_DECODER,
+	TIMING_LATCH_DELAY,
+	TIMING_LATCH_SETUP,
+	TIMING_COUNTER_DELAY,
+	TIMING_COUNTER_SETUP,
+	TIMING_DECODER_DELAY,
+	TIMING_SHARE,
+	TIMING_MARGIN,
+	TIMING_KEYS
+};
+
+static const struct key timing_keys[TIMING_KEYS] = {
+	[TIMING_LATCH] = {"latch", KEY_OPTIONAL},
+	[TIMING_COUNTER] = {"counter", KEY_OPTIONAL},
+	[TIMING_DECODER] = {"decoder", KEY_OPTIONAL},
+	[TIMING_LATCH_DELAY] = {"latch delay", KEY_OPTIONAL},
+	[TIMING_LATCH_SETUP] = {"latch setup", KEY_OPTIONAL},
+	[TIMING_COUNTER_DELAY] = {"counter delay", KEY_OPTIONAL},
+	[TIMING_COUNTER_SETUP] = {"counter setup", KEY_OPTIONAL},
+	[TIMING_DECODER_DELAY] = {"decoder delay", KEY_OPTIONAL},
+	[TIMING_SHARE] = {"share", KEY_OPTIONAL},
+	[TIMING_MARGIN] = {"margin", KEY_OPTIONAL},
+};
+
+enum { SWEEP_BITS, SWEEP_WITHIN, SWEEP_KEYS };
+
+static const struct key sweep_keys[SWEEP_KEYS] = {
+	[SWEEP_BITS] = {"bits", KEY_REQUIRED},
+	[SWEEP_WITHIN] = {"within", KEY_REQUIRED},
+};
+
+static void report_unknown_logic(struct reader *reader, const struct node *node, const char *what, enum logic_kind kind)
+{
+	const struct catalogue *catalogue = reader->catalogue;
+	const char *names[64];
+	size_t count = 0;
+	for (size_t index = 0; index < catalogue->logic_count && count < COUNT_OF(names); index++)
+		if (catalogue->logic[index].kind == kind)
+			names[count++] = catalogue->logic[index].name;
+	diagnose(reader->diagnostics, RULE_UNKNOWN_PART, node->place, "%s: there is no %s \"%s\" in the catalogue", what, what, node->text);
+	hint_words(reader, node->text, names, count);
+}
+
+// The part of the catalogue that `node` names, or the default.
+static const struct logic_part *read_logic(struct reader *reader, const struct node *node, const char *what, enum logic_kind kind,
+                                           const char *usual)
+{
+	const struct logic_part *part = catalogue_logic(reader->catalogue, usual);
+	const char *name;
+	if (node == NULL || !read_scalar(reader, node, what, &name))
+		return part;
+	const struct logic_part *named = catalogue_logic(reader->catalogue, name);
+	if (named != NULL && named->kind == kind)
+		return named;
+	report_unknown_logic(reader, node, what, kind);
+	return part;
+}
+
+static void read_logic_parts(struct reader *reader, const struct node *const *values)
+{
+	struct timing *timing = &reader->plan->timing;
+	const bool async = reader->plan->machine.clear == CLEAR_ASYNC;
+	const struct logic_part *latch = read_logic(reader, values[TIMING_LATCH], "latch", LOGIC_LATCH, "74HC574");
+	const struct logic_part *counter =
+		read_logic(reader, values[TIMING_COUNTER], "counter", LOGIC_COUNTER, async ? "74HC161" : "74HC163");
+	const struct logic_part *decoder = read_logic(reader, values[TIMING_DECODER], "decoder", LOGIC_DECODER, "74HC138");
+	timing->latch_part = latch->name;
+	timing->latch_delay_s = latch->delay_s;
+	timing->latch_setup_s = latch->setup_s;
+	timing->counter_part = counter->name;
+	timing->counter_delay_s = counter->delay_s;
+	timing->counter_setup_s = counter->setup_s;
+	timing->decoder_part = decoder->name;
+	timing->decoder_delay_s = decoder->delay_s;
+}
+
+// "n/m" or "n", above 0 and at most 1.
+static void read_share(struct reader *reader, const struct node *node)
+{
+	const char *text;
+	if (!read_scalar(reader, node, "share", &text))
+		return;
+	const char *slash = strchr(text, '/');
+	struct fraction numerator, denominator = fraction_whole(1), share;
+	bool good = fraction_parse_decimal(text, slash != NULL ? (size_t)(slash - text) : strlen(text), &numerator);
+	if (good && slash != NULL)
+		good = fraction_parse_decimal(slash + 1, strlen(slash + 1), &denominator);
+	good = good && fraction_divide(numerator, denominator, &share) && share.numerator > 0 &&
+	       fraction_compare(share, fraction_whole(1)) <= 0;
+	if (good)
+		reader->plan->timing.share = share;
+	else
+		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "share: wanted n/m, above 0 and at most 1/1, found \"%s\"", text);
+}
+
+void read_timing(struct reader *reader, const struct node *node)
+{
+	struct timing *timing = &reader->plan->timing;
+	const struct node *values[TIMING_KEYS] = {NULL};
+	timing->share = fraction_whole(1);
+	timing->margin_s = FRACTION_ZERO;
+	if (node != NULL && !read_mapping(reader, node, "timing", timing_keys, TIMING_KEYS, values))
+		return;
+	read_logic_parts(reader, values);
+	struct fraction *const overrides[TIMING_KEYS] = {
+		[TIMING_LATCH_DELAY] = &timing->latch_delay_s,     [TIMING_LATCH_SETUP] = &timing->latch_setup_s,
+		[TIMING_COUNTER_DELAY] = &timing->counter_delay_s, [TIMING_COUNTER_SETUP] = &timing->counter_setup_s,
+		[TIMING_DECODER_DELAY] = &timing->decoder_delay_s, [TIMING_MARGIN] = &timing->margin_s,
+	};
+	for (size_t key = 0; key < TIMING_KEYS; key++)
+		if (overrides[key] != NULL && values[key] != NULL)
+			read_time(reader, values[key], timing_keys[key].name, false, overrides[key]);
+	if (values[TIMING_SHARE] != NULL)
+		read_share(reader, values[TIMING_SHARE]);
+}
+
+// "FIELD", "FIELD.hi..lo" (bits within the field) or "state.hi..lo", as bits of the state.
+static bool read_sweep_bits(struct reader *reader, const struct node *node, struct sweep *sweep)
+{
+	const struct machine_plan *machine = &reader->plan->machine;
+	const char *text;
+	if (!read_scalar(reader, node, "bits", &text) || !reader->machine_known)
+		return false;
+	const char *dot = strchr(text, '.');
+	const char *name = arena_copy(reader->arena, text, dot != NULL ? (size_t)(dot - text) : strlen(text));
+	if (name == NULL) {
+		diagnose(reader->diagnostics, RULE_OUT_OF_MEMORY, node->place, "memory is out");
+		return false;
+	}
+	struct field whole = {.high = machine->state_bits - 1, .low = 0};
+	if (strcmp(name, "state") != 0) {
+		const size_t field = find_field(reader->plan, name);
+		if (field == SIZE_MAX) {
+			diagnose(reader->diagnostics, RULE_UNKNOWN_FIELD, node->place, "bits: the machine has no field \"%s\"", name);
+			diagnose_hint(reader->diagnostics, "write FIELD.hi..lo with a field of the machine, or state.hi..lo");
+			return false;
+		}
+		whole = machine->fields[field];
+	}
+	unsigned high = whole.high - whole.low, low = 0;
+	if (dot != NULL && !read_bits(reader, node, dot + 1, "bits", whole.high - whole.low + 1, &high, &low))
+		return false;
+	sweep->text = text;
+	sweep->high = whole.low + high;
+	sweep->low = whole.low + low;
+	return true;
+}
+
+void read_sweeps(struct reader *reader, const struct node *node)
+{
+	struct plan *plan = reader->plan;
+	if (!expect_kind(reader, node, NODE_LIST, "sweep"))
+		return;
+	if (node->count > LIMIT_SIGNALS) {
+		diagnose(reader->diagnostics, RULE_TOO_MANY, node->place, "sweep: wanted at most %d, found %zu", LIMIT_SIGNALS, node->count);
+		return;
+	}
+	plan->sweeps = reader_array(reader, node->count, sizeof *plan->sweeps);
+	if (plan->sweeps == NULL)
+		return;
+	plan->sweep_count = node->count;
+	for (size_t index = 0; index < node->count; index++) {
+		struct sweep *sweep = &plan->sweeps[index];
+		const struct node *values[SWEEP_KEYS];
+		sweep->place = node->items[index]->place;
+		if (!read_mapping(reader, node->items[index], "a sweep", sweep_keys, SWEEP_KEYS, values))
+			continue;
+		if (values[SWEEP_BITS] != NULL)
+			read_sweep_bits(reader, values[SWEEP_BITS], sweep);
+		if (values[SWEEP_WITHIN] != NULL)
+			read_time(reader, values[SWEEP_WITHIN], "within", true, &sweep->within_s);
+	}
+}

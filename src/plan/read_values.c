@@ -1,0 +1,219 @@
+#include "plan/read.h"
+
+#include <string.h>
+
+#include "base/arena.h"
+#include "base/text.h"
+
+static const char *const kind_words[] = {
+	[NODE_SCALAR] = "a scalar",
+	[NODE_LIST] = "a list",
+	[NODE_MAPPING] = "a mapping",
+};
+
+void *reader_array(struct reader *reader, size_t count, size_t size)
+{
+	void *array = arena_array(reader->arena, count, size);
+	if (array == NULL)
+		diagnose(reader->diagnostics, RULE_OUT_OF_MEMORY, (struct place){reader->plan->source, 0, 0}, "memory is out");
+	return array;
+}
+
+bool expect_kind(struct reader *reader, const struct node *node, enum node_kind kind, const char *what)
+{
+	if (node->kind == kind)
+		return true;
+	const bool absent = node->kind == NODE_SCALAR && node->length == 0;
+	diagnose(reader->diagnostics, RULE_NODE_KIND, node->place, "%s: wanted %s, found %s", what, kind_words[kind],
+	         absent ? "nothing" : kind_words[node->kind]);
+	return false;
+}
+
+static size_t find_key(const struct key *keys, size_t count, const char *name)
+{
+	for (size_t index = 0; index < count; index++)
+		if (keys[index].need != KEY_UNUSED && strcmp(keys[index].name, name) == 0)
+			return index;
+	return SIZE_MAX;
+}
+
+static void report_unknown_key(struct reader *reader, const struct node *key, const char *what, const struct key *keys,
+                               size_t count)
+{
+	const char *names[64];
+	size_t name_count = 0;
+	for (size_t index = 0; index < count && name_count < COUNT_OF(names); index++)
+		if (keys[index].need == KEY_OPTIONAL || keys[index].need == KEY_REQUIRED)
+			names[name_count++] = keys[index].name;
+	diagnose(reader->diagnostics, RULE_UNKNOWN_KEY, key->place, "%s has no key \"%s\"", what, key->text);
+	hint_words(reader, key->text, names, name_count);
+}
+
+bool read_mapping(struct reader *reader, const struct node *node, const char *what, const struct key *keys, size_t count,
+                  const struct node **values)
+{
+	for (size_t index = 0; index < count; index++)
+		values[index] = NULL;
+	if (!expect_kind(reader, node, NODE_MAPPING, what))
+		return false;
+	for (size_t pair = 0; pair < node->count; pair++) {
+		const struct node *key = node->pairs[pair].key;
+		const size_t index = find_key(keys, count, key->text);
+		if (index == SIZE_MAX)
+			report_unknown_key(reader, key, what, keys, count);
+		else if (keys[index].need == KEY_LATER)
+			diagnose(reader->diagnostics, RULE_NOT_YET, key->place, "\"%s\" of %s is not carried out by this version yet",
+			         key->text, what);
+		else
+			values[index] = node->pairs[pair].value;
+	}
+	for (size_t index = 0; index < count; index++)
+		if (keys[index].need == KEY_REQUIRED && values[index] == NULL)
+			diagnose(reader->diagnostics, RULE_MISSING_KEY, node->place, "%s needs the key \"%s\"", what, keys[index].name);
+	return true;
+}
+
+bool read_scalar(struct reader *reader, const struct node *node, const char *what, const char **result)
+{
+	if (!expect_kind(reader, node, NODE_SCALAR, what))
+		return false;
+	if (node->length == 0) {
+		diagnose(reader->diagnostics, RULE_NODE_KIND, node->place, "%s: wanted a scalar, found nothing", what);
+		return false;
+	}
+	*result = node->text;
+	return true;
+}
+
+bool read_whole(struct reader *reader, const struct node *node, const char *what, int64_t least, int64_t most, int64_t *result)
+{
+	const char *text;
+	if (!read_scalar(reader, node, what, &text))
+		return false;
+	int64_t value;
+	if (!whole_number_parse(text, &value)) {
+		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "%s: wanted a whole number from %lld to %lld, found \"%s\"",
+		         what, (long long)least, (long long)most, text);
+		struct quantity quantity;
+		if (quantity_parse(text, &quantity) == QUANTITY_OK)
+			diagnose_hint(reader->diagnostics, "write the number without a unit");
+		return false;
+	}
+	if (value < least || value > most) {
+		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "%s: wanted a whole number from %lld to %lld, found %s",
+		         what, (long long)least, (long long)most, text);
+		return false;
+	}
+	*result = value;
+	return true;
+}
+
+bool read_truth(struct reader *reader, const struct node *node, const char *what, bool *result)
+{
+	const char *text;
+	if (!read_scalar(reader, node, what, &text))
+		return false;
+	if (truth_parse(text, result))
+		return true;
+	diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "%s: wanted true or false, found \"%s\"", what, text);
+	return false;
+}
+
+bool read_choice(struct reader *reader, const struct node *node, const char *what, const char *const *words, size_t count,
+                 size_t *result)
+{
+	const char *text;
+	if (!read_scalar(reader, node, what, &text))
+		return false;
+	for (size_t index = 0; index < count; index++) {
+		if (strcmp(words[index], text) == 0) {
+			*result = index;
+			return true;
+		}
+	}
+	diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "%s: \"%s\" is none of its choices", what, text);
+	hint_words(reader, text, words, count);
+	return false;
+}
+
+static void put_allowed_units(struct text *text, unsigned allowed)
+{
+	bool first = true;
+	for (unsigned dimension = DIMENSION_FREQUENCY; dimension <= DIMENSION_PPM; dimension++) {
+		if ((allowed & (1u << dimension)) == 0)
+			continue;
+		text_printf(text, "%s%s", first ? "" : ", or in ", dimension_units((enum dimension)dimension));
+		first = false;
+	}
+}
+
+bool read_quantity(struct reader *reader, const struct node *node, const char *what, unsigned allowed, struct quantity *result)
+{
+	const char *text;
+	if (!read_scalar(reader, node, what, &text))
+		return false;
+	struct quantity quantity;
+	const enum quantity_status status = quantity_parse(text, &quantity);
+	if (status == QUANTITY_OK && (allowed & (1u << quantity.dimension)) != 0) {
+		*result = quantity;
+		return true;
+	}
+	if (status != QUANTITY_OK)
+		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: %s, found \"%s\"", what,
+		         quantity_status_words(status), text);
+	else
+		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: \"%s\" has a unit that does not fit here", what, text);
+	struct text units = {0};
+	put_allowed_units(&units, allowed);
+	diagnose_hint(reader->diagnostics, "give it in %s", text_string(&units));
+	text_release(&units);
+	return false;
+}
+
+bool read_time(struct reader *reader, const struct node *node, const char *what, bool positive, struct fraction *seconds)
+{
+	struct quantity quantity;
+	if (!read_quantity(reader, node, what, 1u << DIMENSION_TIME, &quantity))
+		return false;
+	if (quantity.value.numerator < 0 || (positive && quantity.value.numerator == 0)) {
+		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: must %s, found \"%s\"", what,
+		         positive ? "be above zero" : "not be negative", node->text);
+		return false;
+	}
+	*seconds = quantity.value;
+	return true;
+}
+
+bool read_bits(struct reader *reader, const struct node *node, const char *text, const char *what, unsigned bits, unsigned *high,
+               unsigned *low)
+{
+	unsigned top, bottom;
+	if (!bit_range_parse(text, &top, &bottom)) {
+		diagnose(reader->diagnostics, RULE_BAD_BITS, node->place, "%s: wanted one bit or hi..lo, found \"%s\"", what, text);
+		return false;
+	}
+	if (top >= bits) {
+		diagnose(reader->diagnostics, RULE_BAD_BITS, node->place, "%s: bit %u is beyond the %u bits (%u..0) that there are", what,
+		         top, bits, bits - 1);
+		return false;
+	}
+	*high = top;
+	*low = bottom;
+	return true;
+}
+
+size_t find_signal(const struct plan *plan, const char *name)
+{
+	for (size_t index = 0; index < plan->signal_count; index++)
+		if (strcmp(plan->signals[index].name, name) == 0)
+			return index;
+	return SIZE_MAX;
+}
+
+size_t find_field(const struct plan *plan, const char *name)
+{
+	for (size_t index = 0; index < plan->machine.field_count; index++)
+		if (strcmp(plan->machine.fields[index].name, name) == 0)
+			return index;
+	return SIZE_MAX;
+}
