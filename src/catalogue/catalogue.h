@@ -9,10 +9,9 @@
 #include "base/fraction.h"
 
 struct arena;
-struct node;
 
 struct access_grade {
-	struct fraction access_s;
+	struct fraction access_s; // > 0
 	const char *source;
 };
 
@@ -47,7 +46,12 @@ struct catalogue {
 	size_t logic_count;
 };
 
-// Loads the built-in catalogue into the arena; NULL if memory is out or (our own fault) the data is bad, with diagnostics.
+// Reads a catalogue in the form of src/catalogue/parts.yaml into the arena; reports every error that can be found.
+// NULL, with diagnostics, if there was any or memory is out. The source must outlive the printing of the diagnostics.
+const struct catalogue *catalogue_read(struct arena *arena, const struct source *source, struct diagnostics *diagnostics);
+
+// Reads the built-in catalogue. NULL if memory is out or (our own fault) the data is bad, with diagnostics, which must
+// then be printed before the arena is destroyed.
 const struct catalogue *catalogue_load(struct arena *arena, struct diagnostics *diagnostics);
 
 // The part of a name (exact), or NULL. Cannot fail.
