@@ -52,7 +52,7 @@ cat >"$folder/client.c" <<'END'
 
 int main(void)
 {
-	puts(SCANLATCH_VERSION);
+	puts(scanlatch_version());
 	return 0;
 }
 END
@@ -60,7 +60,7 @@ END
 holds 'a client compiles against header and library' \
 	"${CC:-cc}" -std=c11 -Wall -Wextra -Wpedantic -Werror -o "$folder/client" "$folder/client.c" $(flags --cflags --libs)
 version=$("$folder/client")
-same 'pkg-config and the header have the same version' "$version" "$(flags --modversion)"
+same 'pkg-config and the library have the same version' "$version" "$(flags --modversion)"
 same 'the program has that version too' "scanlatch $version" "$("$root/bin/scanlatch" --version | head -n 1)"
 
 # Other flags, another build: what was compiled with the old ones must not stay.
