@@ -29,20 +29,20 @@ struct writing {
 };
 
 // Records the failure of a step at a path, with errno's reason. Always false, to be returned.
-static bool fail(struct write_failure *failure, const char *step, const char *path)
+static bool report(struct write_failure *failure, const char *step, const char *path)
 {
 	*failure = (struct write_failure){.step = step, .path = path, .error = errno};
 	return false;
 }
 
-static bool fail_in(const struct writing *writing, struct write_failure *failure, const char *step, const char *name)
+static bool report_file(const struct writing *writing, struct write_failure *failure, const char *step, const char *name)
 {
 	int reason = errno;
 	size_t length = strlen(writing->directory);
 	const char *slash = length > 0 && writing->directory[length - 1] == '/' ? "" : "/";
 	const char *path = arena_format(writing->arena, "%s%s%s", writing->directory, slash, name);
 	errno = reason;
-	return fail(failure, step, path == NULL ? writing->directory : path);
+	return report(failure, step, path == NULL ? writing->directory : path);
 }
 
 static bool is_directory(const char *path)
@@ -83,9 +83,9 @@ static bool open_directory(struct writing *writing, struct write_failure *failur
 {
 	const char *path = writing->directory;
 	if (!is_directory(path) && !make_directories(writing->arena, writing->directory, &path))
-		return fail(failure, "make directory", path);
+		return report(failure, "make directory", path);
 	writing->descriptor = open(writing->directory, O_RDONLY | O_DIRECTORY | O_CLOEXEC);
-	return writing->descriptor >= 0 || fail(failure, "make directory", path);
+	return writing->descriptor >= 0 || report(failure, "make directory", path);
 }
 
 // Reads up to `size` bytes; fewer only at the file's end. -1 on error.
@@ -215,15 +215,15 @@ static bool prepare(const struct writing *writing, const struct output_file *fil
                     struct write_failure *failure)
 {
 	if (!is_plain_name(file->name) || is_taken_by_directory(writing->descriptor, file->name))
-		return fail_in(writing, failure, "create", file->name);
+		return report_file(writing, failure, "create", file->name);
 	pending->kept = is_same(writing->descriptor, file);
 	if (pending->kept)
 		return true;
 	int descriptor = create_temporary(writing->descriptor, file->name, pending);
 	if (descriptor < 0)
-		return fail_in(writing, failure, "create", file->name);
+		return report_file(writing, failure, "create", file->name);
 	const char *step = fill_temporary(descriptor, file);
-	return step == NULL || fail_in(writing, failure, step, file->name);
+	return step == NULL || report_file(writing, failure, step, file->name);
 }
 
 static bool rename_all(const struct writing *writing, const struct output_file *files, size_t count,
@@ -235,13 +235,13 @@ static bool rename_all(const struct writing *writing, const struct output_file *
 		if (!pending->made)
 			continue;
 		if (renameat(writing->descriptor, pending->temporary, writing->descriptor, files[index].name) != 0)
-			return fail_in(writing, failure, "rename", files[index].name);
+			return report_file(writing, failure, "rename", files[index].name);
 		pending->made = false;
 		renamed = true;
 	}
 	// Some file systems cannot flush a directory, and say so with EINVAL; the renames are as safe there as they get.
 	if (renamed && !flush(writing->descriptor) && errno != EINVAL)
-		return fail(failure, "flush", writing->directory);
+		return report(failure, "flush", writing->directory);
 	return true;
 }
 
@@ -271,7 +271,7 @@ bool file_write_all(struct arena *arena, const char *directory, struct output_fi
 	};
 	if (writing.directory == NULL || writing.pending == NULL) {
 		errno = ENOMEM;
-		return fail(failure, "create", directory);
+		return report(failure, "create", directory);
 	}
 	if (!open_directory(&writing, failure))
 		return false;
