@@ -75,8 +75,8 @@ void excerpt_put_printable(const char *bytes, size_t length, struct text *out)
 		offset += put_character(bytes + offset, length - offset, out);
 }
 
-// Bytes of the line break at the cursor, 0 if there is none. The breaks are those of YAML 1.1 (section 4.2: LF, CR, CR LF,
-// NEL, LS, PS), as the positions of a plan count them.
+// Bytes of the line break at the cursor, 0 if there is none. The breaks are those of YAML 1.1 (LF, CR, CR LF, NEL, LS, PS;
+// section 4.1.4, from memory), as libyaml counts the lines of a plan.
 static size_t break_length(const struct excerpt_cursor *cursor)
 {
 	const char *bytes = cursor->source->bytes + cursor->offset;

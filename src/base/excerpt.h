@@ -18,9 +18,10 @@ struct excerpt_cursor {
 	bool line_is_long;   // the line has more characters than an excerpt shows
 };
 
-// Puts the line of `place`, indented by two spaces, and below it the marker: tabs as one space, control characters and bytes
-// that are not UTF-8 as '?'. Of a line above 100 characters, at most 100 are shown: 50 before the place, the rest from it on.
-// A column beyond the line's end is marked right behind it. Puts nothing if the source has no such line, or it is empty.
+// Puts the line of `place`, indented by two spaces, and below it the marker: tabs as one space, control characters and
+// bytes that are not UTF-8 as '?'. Of a line above 100 characters at most 100 are shown: 50 before the place, the rest
+// from it on. A column beyond the line's end is marked right behind it. Puts nothing if the source has no such line, or
+// the line is empty.
 void excerpt_put(struct excerpt_cursor *cursor, struct place place, struct text *out);
 
 // Puts `length` bytes with the same replacements, so that no name out of a plan can command a terminal.

@@ -35,7 +35,8 @@ static bool report(struct write_failure *failure, const char *step, const char *
 	return false;
 }
 
-static bool report_file(const struct writing *writing, struct write_failure *failure, const char *step, const char *name)
+static bool report_file(const struct writing *writing, struct write_failure *failure, const char *step,
+                        const char *name)
 {
 	int reason = errno;
 	size_t length = strlen(writing->directory);

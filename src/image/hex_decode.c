@@ -280,8 +280,14 @@ static void note_missing(const struct decoder *decoder)
 enum hex_status hex_decode(const char *bytes, size_t length, uint8_t *image, size_t capacity, struct hex_result *result)
 {
 	*result = (struct hex_result){.line = 1};
-	struct decoder decoder = {.next = bytes, .end = bytes + length, .image = image, .capacity = capacity, .result = result};
-	decoder.given = calloc(capacity / 64 + 1, sizeof(decoder.given[0]));
+	struct decoder decoder = {
+		.next = bytes,
+		.end = bytes + length,
+		.image = image,
+		.capacity = capacity,
+		.given = calloc(capacity / 64 + 1, sizeof(uint64_t)),
+		.result = result,
+	};
 	if (decoder.given == NULL) {
 		result->line = 0;
 		return HEX_MEMORY;

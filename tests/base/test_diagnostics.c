@@ -173,7 +173,8 @@ static void nothing_commands_the_terminal(void **state)
 static void bytes_that_are_not_utf8_count_singly(void **state)
 {
 	(void)state;
-	// RFC 3629: a lone continuation, FF, an overlong '/', a surrogate, above U+10FFFF, a sequence that the line's end cuts.
+	// RFC 3629: a lone continuation, FF, overlong '/' in two and three bytes, a surrogate, above U+10FFFF, and sequences
+	// that the line's end or the text's end cuts.
 	assert_excerpt("\x80x\n", 1, 2, "  ?x\n   ^\n");
 	assert_excerpt("\xFFx\n", 1, 2, "  ?x\n   ^\n");
 	assert_excerpt("\xC0\xAFx\n", 1, 3, "  ??x\n    ^\n");
@@ -192,7 +193,7 @@ static void lines_end_in_any_way(void **state)
 	assert_excerpt("one\r\ntwo\r\nthree", 3, 5, "  three\n      ^\n");
 	assert_excerpt("one\rtwo\rthree", 2, 1, "  two\n  ^\n");
 	assert_excerpt("one\n\n\nfour\n", 4, 1, "  four\n  ^\n");
-	// YAML 1.1, 4.2: NEL, LS and PS break lines.
+	// In YAML 1.1 (4.1.4, from memory) NEL, LS and PS break lines.
 	assert_excerpt("one\xC2\x85two\xE2\x80\xA8three\xE2\x80\xA9" "four", 4, 1, "  four\n  ^\n");
 	assert_excerpt("one\xC2\x85two\xE2\x80\xA8three\xE2\x80\xA9" "four", 2, 3, "  two\n    ^\n");
 }
@@ -228,7 +229,8 @@ static char *counting_line(size_t length)
 	return line;
 }
 
-// Characters first … first+count-1 (from 0) of a line of `length` are shown, the marker stands under place `marked` of them.
+// Characters first … first+count-1 (from 0) of a line of `length` are shown, the marker stands under place `marked` of
+// them.
 static void assert_cut(size_t length, uint32_t column, size_t first, size_t count, size_t marked)
 {
 	char *line = counting_line(length);

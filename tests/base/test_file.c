@@ -329,8 +329,8 @@ static void a_full_disk_leaves_everything_as_it_was(void **state)
 	arena_destroy(arena);
 }
 
-// In a child, for root may write anywhere and has to become somebody else first. Returns errno of the failed step, 0 if there
-// was no failure, -1 if it was another step or no other user could be had.
+// In a child, for root may write anywhere and has to become somebody else first. Returns errno of the failed step, 0 if
+// there was no failure, -1 if it was another step or no other user could be had.
 static int write_error_without_rights(const char *directory, const char *step)
 {
 	if (geteuid() == 0 && setuid(65534) != 0)

@@ -53,7 +53,8 @@ static void rates_of_525_lines(void **state)
 	assert_fraction(over(fraction_whole(1000000), line_rate), 572, 9);
 }
 
-// ITU-R BT.470-6, table 2, 2.11 and 2.11b: 4 433 618.75 Hz, (1135/4 + 1/625) cycles a line; table 1: 15 625 lines a second.
+// ITU-R BT.470-6, table 2, 2.11 and 2.11b: 4 433 618.75 Hz, (1135/4 + 1/625) cycles a line; table 1: 15 625 lines a
+// second.
 static void subcarrier_of_625_lines(void **state)
 {
 	(void)state;

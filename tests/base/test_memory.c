@@ -102,6 +102,12 @@ static void diagnose_many(struct diagnostics *diagnostics, const struct source *
 	}
 }
 
+static bool ends_in(const struct text *text, const char *last)
+{
+	size_t length = strlen(last);
+	return text->length >= length && strcmp(text->bytes + text->length - length, last) == 0;
+}
+
 static void a_lost_diagnostic_is_replaced_by_out_of_memory(void **state)
 {
 	(void)state;
@@ -127,8 +133,7 @@ static void a_lost_diagnostic_is_replaced_by_out_of_memory(void **state)
 			assert_int_equal(diagnostics_rule(diagnostics, count - 1), RULE_OUT_OF_MEMORY);
 		struct text text = {0};
 		diagnostics_print(diagnostics, &text, false);
-		const char *last = "scanlatch: error: out of memory [out-of-memory]\n";
-		assert_int_equal(text.length >= strlen(last) && strcmp(text.bytes + text.length - strlen(last), last) == 0, !complete);
+		assert_int_equal(ends_in(&text, "scanlatch: error: out of memory [out-of-memory]\n"), !complete);
 		text_release(&text);
 		diagnostics_destroy(diagnostics);
 	}
