@@ -1,0 +1,340 @@
+#include "table/faults.h"
+
+#include "base/arena.h"
+#include "base/text.h"
+
+// Faults in the words of someone at a bench. Texts are put together in the arena.
+struct reporter {
+	struct arena *arena;
+	const struct timeline *timeline;
+	const struct plan *plan;
+	struct diagnostics *diagnostics;
+};
+
+static const char *or_unnamed(const char *words)
+{
+	return words != NULL ? words : "(memory is out)";
+}
+
+static const char *cell_words(const struct reporter *reporter, uint32_t cell)
+{
+	const struct cell_place place = timeline_place(reporter->timeline, cell);
+	return or_unnamed(arena_format(reporter->arena, "line %u (\"%s\"), cell %u, region \"%s\"", place.line,
+	                               timeline_line_name(reporter->timeline, cell), place.cell,
+	                               timeline_region_name(reporter->timeline, cell)));
+}
+
+static bool is_start(const struct reporter *reporter, uint32_t cell)
+{
+	return cell == 0 && reporter->plan->machine.has_start;
+}
+
+static uint32_t mask_at(const struct reporter *reporter, uint32_t cell)
+{
+	return reporter->timeline->has_holds ? reporter->timeline->hold_mask[cell] : 0;
+}
+
+static uint32_t value_at(const struct reporter *reporter, uint32_t cell)
+{
+	return reporter->timeline->has_holds ? reporter->timeline->hold_value[cell] : 0;
+}
+
+// Where the plan says what holds a cell's state: its start, its region's first hold, or the region.
+static struct place hold_place(const struct reporter *reporter, uint32_t cell)
+{
+	const struct region *region = timeline_region(reporter->timeline, cell);
+	if (is_start(reporter, cell))
+		return reporter->plan->machine.start_place;
+	return region->hold_count > 0 ? region->holds[0].place : region->place;
+}
+
+static const char *field_name(const struct reporter *reporter, size_t field)
+{
+	return reporter->plan->machine.fields[field].name;
+}
+
+static unsigned bits_for(uint32_t states)
+{
+	unsigned bits = 0;
+	while (((uint64_t)1 << bits) < states)
+		bits++;
+	return bits;
+}
+
+static void hint_bits(const struct reporter *reporter, uint32_t needed)
+{
+	if (bits_for(needed) <= LIMIT_STATE_BITS)
+		diagnose_hint(reporter->diagnostics, "state: %u bits would do", bits_for(needed));
+}
+
+static void put_name(struct text *text, const char *name)
+{
+	text_printf(text, "%s\"%s\"", text->length > 0 ? ", " : "", name);
+}
+
+// The fields that a cell's region holds and those that have codes: what its states depend on.
+static const char *limits_words(const struct reporter *reporter, uint32_t cell)
+{
+	const struct plan *plan = reporter->plan;
+	const struct region *region = timeline_region(reporter->timeline, cell);
+	struct text held = {0}, decoded = {0};
+	for (size_t index = 0; index < region->hold_count; index++)
+		put_name(&held, field_name(reporter, region->holds[index].field));
+	for (size_t field = 0; field < plan->machine.field_count; field++)
+		for (size_t signal = 0; signal < plan->signal_count; signal++)
+			if (plan->signals[signal].origin == FROM_FIELD && plan->signals[signal].field == field) {
+				put_name(&decoded, plan->machine.fields[field].name);
+				break;
+			}
+	const bool both = held.length > 0 && decoded.length > 0;
+	const char *words = arena_format(reporter->arena, "%s%s%s%s%s", held.length > 0 ? "the hold of " : "", text_string(&held),
+	                                 both ? " and " : "", decoded.length > 0 ? "the codes of " : "", text_string(&decoded));
+	text_release(&held);
+	text_release(&decoded);
+	return or_unnamed(words);
+}
+
+static void report_states_short(const struct reporter *reporter, const struct fault *fault)
+{
+	if (fault->cell == NO_CELL) {
+		diagnose(reporter->diagnostics, RULE_STATES_SHORT, reporter->plan->machine.place,
+		         "the frame needs %u states, one for each cell, but %u bits of state have %u", fault->needed,
+		         reporter->plan->machine.state_bits, fault->available);
+		hint_bits(reporter, fault->needed);
+		return;
+	}
+	diagnose(reporter->diagnostics, RULE_STATES_SHORT, hold_place(reporter, fault->cell),
+	         "%s: %s: %u states needed for this cell and those that it competes with, %u available", cell_words(reporter, fault->cell),
+	         limits_words(reporter, fault->cell), fault->needed, fault->available);
+}
+
+static void report_state_shared(const struct reporter *reporter, const struct fault *fault)
+{
+	diagnose(reporter->diagnostics, RULE_STATE_SHARED, hold_place(reporter, fault->cell),
+	         "%s, and %s, are held to one state, 0x%0*X, but their rows differ", cell_words(reporter, fault->cell),
+	         cell_words(reporter, fault->other), (int)(reporter->plan->machine.state_bits + 3) / 4, fault->state);
+	diagnose_also(reporter->diagnostics, hold_place(reporter, fault->other), "the second of the two is held here");
+	diagnose_hint(reporter->diagnostics, "hold a further field that tells the cells apart, or leave some bits free");
+}
+
+static bool lists_code(const struct signal *signal, uint32_t code)
+{
+	for (size_t index = 0; index < signal->code_count; index++)
+		if (signal->codes[index] == code)
+			return true;
+	return false;
+}
+
+// True if a code of a field gives its signals with listed codes the levels that `asserted` says.
+static bool code_agrees(const struct reporter *reporter, size_t field, uint32_t code, uint64_t asserted)
+{
+	for (size_t index = 0; index < reporter->plan->signal_count; index++) {
+		const struct signal *signal = &reporter->plan->signals[index];
+		if (signal->origin == FROM_FIELD && signal->field == field && !signal->auto_codes &&
+		    lists_code(signal, code) != (bool)(asserted >> index & 1))
+			return false;
+	}
+	return true;
+}
+
+// What a cell must show at its pins.
+static uint64_t asserted_at(const struct reporter *reporter, uint32_t cell)
+{
+	const int64_t cells = reporter->timeline->cell_count;
+	uint64_t asserted = 0;
+	for (size_t index = 0; index < reporter->plan->signal_count; index++) {
+		const int64_t led = (cell + reporter->plan->signals[index].lead_cells % cells + cells) % cells;
+		asserted |= reporter->timeline->asserted[led] & (uint64_t)1 << index;
+	}
+	return asserted;
+}
+
+// The first field that no code allowed by the cell's held bits serves; NO_SUBJECT if only fields together leave none.
+static size_t culprit(const struct reporter *reporter, uint32_t cell, uint64_t asserted)
+{
+	const struct machine_plan *machine = &reporter->plan->machine;
+	for (size_t index = 0; index < machine->field_count; index++) {
+		const struct field *field = &machine->fields[index];
+		const uint32_t held = (mask_at(reporter, cell) & field_mask(field)) >> field->low;
+		const uint32_t value = field_value(field, value_at(reporter, cell));
+		bool served = false;
+		for (uint32_t code = 0; code <= field_mask(field) >> field->low && !served; code++)
+			served = ((code ^ value) & held) == 0 && code_agrees(reporter, index, code, asserted);
+		if (!served)
+			return index;
+	}
+	return NO_SUBJECT;
+}
+
+// The field signals of a cell with their levels; of one field, or of all if field is NO_SUBJECT.
+static const char *levels_words(const struct reporter *reporter, size_t field, uint64_t asserted)
+{
+	struct text text = {0};
+	for (size_t index = 0; index < reporter->plan->signal_count; index++) {
+		const struct signal *signal = &reporter->plan->signals[index];
+		if (signal->origin != FROM_FIELD || (field != NO_SUBJECT && signal->field != field))
+			continue;
+		put_name(&text, signal->name);
+		text_put(&text, asserted >> index & 1 ? " asserted" : " not asserted");
+	}
+	const char *words = arena_copy(reporter->arena, text_string(&text), text.length);
+	text_release(&text);
+	return or_unnamed(words);
+}
+
+static void also_codes(const struct reporter *reporter, size_t field)
+{
+	for (size_t index = 0; index < reporter->plan->signal_count; index++) {
+		const struct signal *signal = &reporter->plan->signals[index];
+		if (signal->origin != FROM_FIELD || signal->auto_codes || (field != NO_SUBJECT && signal->field != field))
+			continue;
+		diagnose_also(reporter->diagnostics, signal->place, "signal \"%s\" has its codes here", signal->name);
+		return;
+	}
+}
+
+static void report_code_conflict(const struct reporter *reporter, const struct fault *fault)
+{
+	if (fault->other != NO_CELL) {
+		diagnose(reporter->diagnostics, RULE_CODE_CONFLICT, hold_place(reporter, fault->cell),
+		         "%s, and %s, are held to one code, %u, of field \"%s\", but differ in its signals, which have codes: auto",
+		         cell_words(reporter, fault->cell), cell_words(reporter, fault->other), fault->available,
+		         field_name(reporter, fault->field));
+		diagnose_also(reporter->diagnostics, hold_place(reporter, fault->other), "the second of the two is held here");
+		return;
+	}
+	const uint64_t asserted = asserted_at(reporter, fault->cell);
+	const size_t field = culprit(reporter, fault->cell, asserted);
+	const bool held = mask_at(reporter, fault->cell) != 0;
+	const char *what = field == NO_SUBJECT ? "the decoded fields together have"
+	                                       : or_unnamed(arena_format(reporter->arena, "field \"%s\" has", field_name(reporter, field)));
+	diagnose(reporter->diagnostics, RULE_CODE_CONFLICT, hold_place(reporter, fault->cell), "%s: %s no code%s for %s",
+	         cell_words(reporter, fault->cell), what, held ? " that the hold allows" : "", levels_words(reporter, field, asserted));
+	also_codes(reporter, field);
+}
+
+static void report_start_hold(const struct reporter *reporter, const struct fault *fault)
+{
+	const struct region *region = timeline_region(reporter->timeline, 0);
+	for (size_t index = 0; index < region->hold_count; index++) {
+		const struct field *field = &reporter->plan->machine.fields[region->holds[index].field];
+		if (field_value(field, fault->state) == field_value(field, value_at(reporter, 0)))
+			continue;
+		diagnose(reporter->diagnostics, RULE_START_CONFLICT, reporter->plan->machine.start_place,
+		         "start has %u in field \"%s\", but %s, holds it to %u", field_value(field, fault->state), field->name,
+		         cell_words(reporter, 0), field_value(field, value_at(reporter, 0)));
+		diagnose_also(reporter->diagnostics, region->holds[index].place, "the first cell is held here");
+		return;
+	}
+}
+
+static void report_start_signal(const struct reporter *reporter, const struct fault *fault)
+{
+	const uint64_t asserted = asserted_at(reporter, 0);
+	for (size_t index = 0; index < reporter->plan->signal_count; index++) {
+		const struct signal *signal = &reporter->plan->signals[index];
+		const bool wanted = asserted >> index & 1;
+		if (signal->origin != FROM_FIELD || signal->auto_codes)
+			continue;
+		const struct field *field = &reporter->plan->machine.fields[signal->field];
+		const uint32_t code = field_value(field, fault->state);
+		if (lists_code(signal, code) == wanted)
+			continue;
+		diagnose(reporter->diagnostics, RULE_START_CONFLICT, reporter->plan->machine.start_place,
+		         "start has %u in field \"%s\", with which \"%s\" is %sasserted, but %s, wants it %sasserted", code, field->name,
+		         signal->name, wanted ? "not " : "", cell_words(reporter, 0), wanted ? "" : "not ");
+		diagnose_also(reporter->diagnostics, signal->place, "signal \"%s\" has its codes here", signal->name);
+		return;
+	}
+}
+
+static void report_start_conflict(const struct reporter *reporter, const struct fault *fault)
+{
+	if ((fault->state & mask_at(reporter, 0)) != value_at(reporter, 0))
+		report_start_hold(reporter, fault);
+	else
+		report_start_signal(reporter, fault);
+}
+
+static void report_codes_short(const struct reporter *reporter, const struct fault *fault)
+{
+	const struct signal *signal = &reporter->plan->signals[fault->signal];
+	diagnose(reporter->diagnostics, RULE_CODES_SHORT, signal->place,
+	         "codes: auto needs %u codes of field \"%s\", but %u are available; the cells that lack them begin at %s", fault->needed,
+	         field_name(reporter, fault->field), fault->available, cell_words(reporter, fault->cell));
+	diagnose_hint(reporter->diagnostics, "give the field or the state another bit");
+}
+
+static void report_counted_automatic(const struct reporter *reporter, const struct fault *fault)
+{
+	const struct signal *signal = &reporter->plan->signals[fault->signal];
+	const bool asserted = asserted_at(reporter, fault->cell) >> fault->signal & 1;
+	diagnose(reporter->diagnostics, RULE_COUNTED_CONFLICT, signal->place,
+	         "signal \"%s\" is %sasserted in %s, and %sasserted in %s, but the counter has %u in field \"%s\" in both", signal->name,
+	         asserted ? "" : "not ", cell_words(reporter, fault->cell), asserted ? "not " : "", cell_words(reporter, fault->other),
+	         fault->available, field_name(reporter, fault->field));
+}
+
+static void report_counted_conflict(const struct reporter *reporter, const struct fault *fault)
+{
+	if (fault->field == NO_SUBJECT)
+		diagnose(reporter->diagnostics, RULE_COUNTED_CONFLICT, reporter->plan->machine.start_place,
+		         "wanted start 0, since a counter begins its frame there, found %u", fault->available);
+	else if (fault->other != NO_CELL)
+		report_counted_automatic(reporter, fault);
+	else if (fault->signal == NO_SUBJECT)
+		diagnose(reporter->diagnostics, RULE_COUNTED_CONFLICT, hold_place(reporter, fault->cell),
+		         "%s: field \"%s\" is held to %u, but the counter has state %u, with %u there", cell_words(reporter, fault->cell),
+		         field_name(reporter, fault->field), fault->needed, fault->state, fault->available);
+	else
+		diagnose(reporter->diagnostics, RULE_COUNTED_CONFLICT, reporter->plan->signals[fault->signal].place,
+		         "%s: wanted \"%s\" %sasserted, but the counter has state %u, with %u in field \"%s\"", cell_words(reporter, fault->cell),
+		         reporter->plan->signals[fault->signal].name, fault->needed != 0 ? "" : "not ", fault->state, fault->available,
+		         field_name(reporter, fault->field));
+}
+
+static void report_counter_short(const struct reporter *reporter, const struct fault *fault)
+{
+	const bool passing = reporter->plan->machine.clear == CLEAR_ASYNC;
+	diagnose(reporter->diagnostics, RULE_COUNTER_SHORT, reporter->plan->machine.place,
+	         "the frame needs %u states%s, but a counter of %u bits has %u", fault->needed,
+	         passing ? ", one of them to clear the counter in" : "", reporter->plan->machine.state_bits, fault->available);
+	hint_bits(reporter, fault->needed);
+}
+
+static void report_fault(const struct reporter *reporter, const struct fault *fault)
+{
+	switch (fault->rule) {
+	case RULE_STATES_SHORT:
+		report_states_short(reporter, fault);
+		break;
+	case RULE_STATE_SHARED:
+		report_state_shared(reporter, fault);
+		break;
+	case RULE_CODE_CONFLICT:
+		report_code_conflict(reporter, fault);
+		break;
+	case RULE_START_CONFLICT:
+		report_start_conflict(reporter, fault);
+		break;
+	case RULE_CODES_SHORT:
+		report_codes_short(reporter, fault);
+		break;
+	case RULE_COUNTED_CONFLICT:
+		report_counted_conflict(reporter, fault);
+		break;
+	default:
+		report_counter_short(reporter, fault);
+		break;
+	}
+}
+
+void faults_report(const struct faults *faults, const struct timeline *timeline, struct diagnostics *diagnostics)
+{
+	struct reporter reporter = {arena_create(), timeline, timeline->plan, diagnostics};
+	if (reporter.arena == NULL || faults->memory_out)
+		diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){timeline->plan->source, 0, 0}, "memory is out");
+	for (size_t index = 0; index < faults->count && reporter.arena != NULL && !faults->memory_out; index++)
+		report_fault(&reporter, &faults->list[index]);
+	arena_destroy(reporter.arena);
+}

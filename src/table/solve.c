@@ -1,0 +1,208 @@
+#include "table/solve.h"
+
+#include "base/arena.h"
+#include "table/search.h"
+#include "table/walk.h"
+
+struct solver {
+	struct arena *arena;
+	const struct constraints *constraints;
+	struct code_space codes;
+	struct code_choice *choices;           // [field_count]
+	struct automatic_field *automatic;     // [automatic_count]
+	size_t automatic_count;
+	struct assignment assignment;
+};
+
+static void fill_codes(struct solver *solver)
+{
+	for (size_t index = 0; index < solver->automatic_count; index++) {
+		automatic_assert(&solver->automatic[index]);
+		solver->choices[index] = (struct code_choice){solver->automatic[index].field, solver->automatic[index].asserted};
+	}
+	code_space_fill(&solver->codes, solver->choices, solver->automatic_count);
+}
+
+static bool hold_cells(struct solver *solver, struct arena *arena, bool quietly, struct faults *faults)
+{
+	const struct constraints *constraints = solver->constraints;
+	uint32_t *wanted = NULL;
+	if (constraints->held_start[constraints->classes.count] == 0)
+		return true;
+	if (quietly && walk_has_wishes(constraints)) {
+		wanted = arena_array(arena, constraints->period, sizeof *wanted);
+		if (wanted == NULL || !walk_wish(&solver->assignment, arena, wanted))
+			return faults_memory(faults);
+	}
+	return assignment_hold(&solver->assignment, arena, wanted, faults);
+}
+
+static bool assign(struct solver *solver, struct arena *arena, bool quietly, struct faults *faults)
+{
+	if (!assignment_begin(&solver->assignment, faults) || !hold_cells(solver, arena, quietly, faults))
+		return false;
+	return !quietly || walk_place(&solver->assignment, arena) || faults_memory(faults);
+}
+
+// Assigns states under the codes as they are. Without `quietly` it only finds out whether that can be done.
+static bool try_codes(struct solver *solver, bool quietly, struct faults *faults)
+{
+	struct arena *arena = arena_create();
+	if (arena == NULL)
+		return faults_memory(faults);
+	fill_codes(solver);
+	const bool assigned = assign(solver, arena, quietly, faults);
+	arena_destroy(arena);
+	return assigned;
+}
+
+// Gives the pattern of a fault's cell more codes of some field. *shortage becomes a fault of the first field that has none to spare.
+static enum repair repair_codes(struct solver *solver, const struct fault *fault, struct fault *shortage)
+{
+	enum repair best = REPAIR_HOPELESS;
+	for (size_t index = 0; index < solver->automatic_count && best != REPAIR_DONE; index++) {
+		const enum repair repair = automatic_repair(&solver->automatic[index], fault);
+		if (repair == REPAIR_SHORT && best == REPAIR_HOPELESS)
+			*shortage = automatic_fault(&solver->automatic[index], fault->cell);
+		if (repair != REPAIR_HOPELESS)
+			best = repair;
+	}
+	return best;
+}
+
+static bool search_codes(struct solver *solver, struct faults *faults)
+{
+	const uint64_t work = (uint64_t)solver->constraints->period + solver->constraints->state_count;
+	bool too_many = false;
+	struct label_search *search =
+		label_search_create(solver->arena, solver->automatic, solver->automatic_count, work, &too_many);
+	if (search == NULL)
+		return !too_many && faults_memory(faults);
+	do {
+		struct faults ignored = {.count = 0};
+		if (try_codes(solver, false, &ignored))
+			return try_codes(solver, true, faults);
+		if (ignored.memory_out)
+			return faults_memory(faults);
+	} while (label_search_next(search));
+	return false;
+}
+
+static bool label_fields(struct solver *solver, struct faults *faults)
+{
+	bool good = true;
+	for (size_t index = 0; index < solver->automatic_count; index++)
+		good = automatic_label(&solver->automatic[index], &solver->assignment, solver->arena, faults) && good;
+	return good;
+}
+
+// True if a cell's hold, or the start, fixes all bits of fields with automatic codes.
+static bool holds_codes(const struct solver *solver, uint32_t cell)
+{
+	uint32_t bits = 0;
+	for (size_t index = 0; index < solver->automatic_count; index++)
+		bits |= field_mask(solver->automatic[index].field);
+	return cell_is_fixed(&solver->assignment, cell) || (bits & ~cell_mask(solver->constraints, cell)) == 0;
+}
+
+// True if under the listed codes alone some code would do for a cell.
+static bool listed_codes_allow(const struct solver *solver, uint32_t cell)
+{
+	const struct constraints *constraints = solver->constraints;
+	const uint32_t decoder = constraints->decoder_mask;
+	const uint32_t free = decoder & ~cell_mask(constraints, cell);
+	uint64_t listed = constraints->field_signals;
+	uint32_t subset = 0;
+	for (size_t index = 0; index < solver->automatic_count; index++)
+		listed &= ~solver->automatic[index].automatic;
+	do {
+		const uint32_t code = code_of_state(&solver->codes, (cell_value(constraints, cell) & decoder) | subset);
+		if (((solver->codes.levels[code] ^ cell_levels(constraints, cell)) & listed) == 0)
+			return true;
+		subset = next_subset(subset, free);
+	} while (subset != 0);
+	return false;
+}
+
+// True if no choice of codes can mend a fault.
+static bool is_beyond_codes(const struct solver *solver, const struct fault *fault)
+{
+	if (fault->rule == RULE_CODE_CONFLICT)
+		return holds_codes(solver, fault->cell) || !listed_codes_allow(solver, fault->cell);
+	if (fault->rule == RULE_STATE_SHARED)
+		return holds_codes(solver, fault->cell) && holds_codes(solver, fault->other);
+	return fault->rule == RULE_START_CONFLICT;
+}
+
+// Tries codes, with more of them for the cells at fault, as long as that is possible.
+static enum repair try_repairs(struct solver *solver, struct fault *shortage, struct faults *faults)
+{
+	enum repair repair = REPAIR_DONE;
+	while (repair == REPAIR_DONE) {
+		faults->count = 0;
+		if (try_codes(solver, true, faults))
+			return REPAIR_DONE;
+		if (faults->memory_out || is_beyond_codes(solver, &faults->list[0]))
+			return REPAIR_HOPELESS;
+		repair = repair_codes(solver, &faults->list[0], shortage);
+	}
+	return repair;
+}
+
+// Finds codes and states together. Faults that no codes can mend are left as they are.
+static bool try_automatic(struct solver *solver, struct faults *faults)
+{
+	struct fault shortage = fault_at(RULE_CODES_SHORT, NO_CELL);
+	struct faults ignored = {.count = 0};
+	if (!label_fields(solver, faults))
+		return false;
+	const enum repair repair = try_repairs(solver, &shortage, faults);
+	if (repair != REPAIR_SHORT)
+		return repair == REPAIR_DONE;
+	if (search_codes(solver, &ignored))
+		return true;
+	if (ignored.memory_out)
+		return faults_memory(faults);
+	if (!holds_codes(solver, faults->list[0].cell)) {
+		faults->count = 0;
+		faults_add(faults, shortage);
+	}
+	return false;
+}
+
+static bool try_start(struct solver *solver, bool start_fixed, uint32_t start, struct faults *faults)
+{
+	solver->assignment.start_fixed = start_fixed;
+	solver->assignment.start = start;
+	return solver->automatic_count > 0 ? try_automatic(solver, faults) : try_codes(solver, true, faults);
+}
+
+static bool create_solver(struct solver *solver, struct arena *arena, const struct constraints *constraints, uint32_t *state_of_cell)
+{
+	*solver = (struct solver){.arena = arena, .constraints = constraints};
+	solver->choices = arena_array(arena, constraints->plan->machine.field_count, sizeof *solver->choices);
+	return solver->choices != NULL && code_space_create(&solver->codes, arena, constraints) &&
+	       assignment_create(&solver->assignment, arena, &solver->codes, state_of_cell) &&
+	       automatic_create(arena, constraints, &solver->automatic, &solver->automatic_count);
+}
+
+bool solve_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell, struct faults *faults)
+{
+	const struct machine_plan *machine = &constraints->plan->machine;
+	struct faults ignored = {.count = 0};
+	struct solver solver;
+	if (constraints->period > constraints->state_count) {
+		struct fault fault = fault_at(RULE_STATES_SHORT, NO_CELL);
+		fault.needed = constraints->period;
+		fault.available = constraints->state_count;
+		faults_add(faults, fault);
+		return false;
+	}
+	if (!create_solver(&solver, arena, constraints, state_of_cell))
+		return faults_memory(faults);
+	if (machine->has_start)
+		return try_start(&solver, true, machine->start, faults);
+	if (try_start(&solver, true, 0, &ignored))
+		return true;
+	return ignored.memory_out ? faults_memory(faults) : try_start(&solver, false, 0, faults);
+}
