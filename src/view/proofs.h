@@ -1,0 +1,61 @@
+// The results of the proofs for people and for programs. Everywhere, lines and cells are counted from 0, as in plans.
+#ifndef SCANLATCH_VIEW_PROOFS_H
+#define SCANLATCH_VIEW_PROOFS_H
+
+#include <jansson.h>
+#include <stdbool.h>
+
+#include "proof/proof.h"
+
+struct text;
+
+// Puts a line for each proof, in the order of enum proof_kind: the verdict, the proof's name and its figures in words,
+// wrapped to 100 characters. Verdicts: "pass"; "FAIL", a must that failed; "miss", advice that failed; "none", the plan does
+// not ask. The details of a failure follow it, indented. With `colour`, verdicts are coloured by ANSI codes. A last line says
+// from where lines and cells are counted, if any is named. When memory is out, out->failed is set.
+void view_proofs(struct text *out, const struct proofs *proofs, bool colour);
+
+// The same for one proof, without that last line.
+void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind kind, bool colour);
+
+// The results as an object with a key for each proof, in the order of enum proof_kind. A new reference, owned by the caller;
+// NULL when memory is out. Every proof has
+//   "verdict": "pass", "fail" or "absent" (the plan does not ask), "must": true or false (advice)
+//   "reason": why, in words          only where it could not be judged; then it has no further keys
+//   "counterexample": {…}            only where it failed and there is one
+// and its figures, which an absent proof does not have.
+//
+// Values: counts, states, addresses, bytes, codes and bits are integers. TICKS and exact fractions are strings such as
+// "238944" or "455/2". For a time NAME, "NAME_s" is the exact fraction of a second and "NAME_ms" or "NAME_ns" the number in
+// that unit; for any other fraction NAME, "NAME" is exact and "NAME_rounded" the decimal. Rounded numbers have at most 6
+// decimals and are reals.
+//
+// PLACE is five keys: "line" (in the frame), "line_type" (its name), "cell" (in the line), "region" (its name), "frame_cell"
+// (in the frame).
+//
+//   "closure":  { "lines", "cells", "ticks": TICKS (as the machine takes them), time frame (_s, _ms; left out if it does not
+//                 fit a fraction of 64 bits), "period_cells" (the states run through so many cells; 0: they never come
+//                 back), "start_state", "banks" }
+//   "signals":  { "comparisons", "held_comparisons", "codes": { NAME: [code, …] of every signal decoded from the state } }
+//   "colour":   { "uniform": all lines have the same number of cycles, fractions cycles_per_line (of the first line) and
+//                 cycles_per_frame, "repeats_lines", "repeats_frames" (fractions and repeats left out if they do not fit 64
+//                 bits), "asked": "free", "every line", "every 2 frames", … }
+//   "power-up": { "states" (in all banks), "frame_states", "longest_cells", fraction longest_lines, "longest_state",
+//                 "longest_bank", "lost_states", and if some are lost "second_loop": { "state", "cells" } }
+//   "upset":    { "upsets", "worst_cells", "worst": { PLACE, "bit" }, fraction mean_cells, "worst_slip_cells", fraction
+//                 worst_slip_lines, "worst_slip": { PLACE, "bit" }, fraction mean_slip_cells }
+//   "glitches": { "decoded": signals are decoded from the state, "edges", "multi_bit_edges", "disturbed": [ { "signal",
+//                 "edges", PLACE of the cell that the first of them begins, "from_state", "to_state", "from_code",
+//                 "between_code", "to_code" } ], "direct": data outputs are direct, and if so time unsettled (_s, _ns) and
+//                 "unsettled_chip": its label }
+//   "speed":    { times cell, available, delay, access, setup, margin, needed, slack (_s, _ns), "second_pass": delay and
+//                 access count twice, "slowest_chip": its label }
+//   "sweep":    { "sweeps": [ { "bits": as the plan has them, "kept": true or false, "values", "missing", and if some are
+//                 "first_missing", times worst_gap and within (_s, _ms), "worst_value" } ] }
+//
+// counterexample: { "what": in words, with expected and found, "bank", PLACE (not of power-up), "state" (whose row was read),
+//   "signal": its name, if a pin is wrong, and if a byte is to blame "chip": label, "address", "byte" (of a 16-bit chip: the
+//   word, and its address counts words) }. One without a place or state has "what" and "bank" only.
+json_t *view_proofs_json(const struct proofs *proofs);
+
+#endif

@@ -1,0 +1,382 @@
+// The figures of each proof, as phrases that a stranger at a bench understands.
+#include <inttypes.h>
+
+#include "base/text.h"
+#include "view/proofs_shared.h"
+
+#define PLACES 3
+
+static void put_state(struct text *out, const struct proofs *proofs, uint32_t state)
+{
+	text_put(out, "state ");
+	text_put_hex(out, state, state_bits(proofs));
+}
+
+static void put_bank(struct text *out, const struct proofs *proofs, uint32_t bank)
+{
+	if (proofs->banks > 1)
+		text_printf(out, " in bank %" PRIu32, bank);
+}
+
+static void put_banks(struct text *out, const struct proofs *proofs, const char *words)
+{
+	if (proofs->banks > 1)
+		text_printf(out, " %s %" PRIu32 " banks", words, proofs->banks);
+}
+
+// "1/101 line", "0.396 lines", "3 lines".
+static void put_lines(struct text *out, struct fraction lines)
+{
+	if (lines.numerator == 1)
+		text_put_fraction(out, lines);
+	else
+		text_put_rounded(out, lines, PLACES);
+	text_put(out, lines.numerator == 1 ? " line" : " lines");
+}
+
+// "455/2 (227.5)", "228".
+static void put_exact(struct text *out, struct fraction value)
+{
+	text_put_fraction(out, value);
+	if (fraction_is_whole(value))
+		return;
+	text_put(out, " (");
+	text_put_rounded(out, value, 6);
+	text_put(out, ")");
+}
+
+static void put_frame(struct text *out, uint32_t lines, uint32_t cells, int64_t ticks)
+{
+	text_put_count(out, lines, "line", "lines");
+	text_put(out, ", ");
+	text_put_count(out, cells, "cell", "cells");
+	text_put(out, ", ");
+	text_put_count(out, (uint64_t)ticks, "tick", "ticks");
+}
+
+static void put_closure(struct text *out, const struct proofs *proofs)
+{
+	const struct closure_result *closure = &proofs->closure;
+	const struct timeline *timeline = proofs->timeline;
+	struct fraction seconds;
+	if (proof_failed(proofs, PROOF_CLOSURE)) {
+		text_put(out, "the machine does not keep to the frame of ");
+		put_frame(out, timeline->line_count, timeline->cell_count, timeline->tick_count);
+		return;
+	}
+	put_frame(out, closure->lines, closure->cells, closure->ticks);
+	text_put(out, "; home in ");
+	put_state(out, proofs, closure->start_state);
+	if (seconds_of_ticks(&plan_of(proofs)->clock, closure->ticks, &seconds)) {
+		text_put(out, " after ");
+		text_put_time(out, seconds);
+	}
+	if (closure->period_cells != closure->cells) {
+		text_put(out, "; the states repeat every ");
+		text_put_count(out, closure->period_cells, "cell", "cells");
+	}
+	put_banks(out, proofs, "in each of");
+}
+
+static void put_signals(struct text *out, const struct proofs *proofs)
+{
+	const struct signals_result *signals = &proofs->signals;
+	const bool failed = proof_failed(proofs, PROOF_SIGNALS);
+	text_put(out, failed ? "not all of " : "");
+	text_put_count(out, signals->comparisons, "pin level", "pin levels");
+	if (signals->held_comparisons > 0) {
+		text_put(out, " and ");
+		text_put_count(out, signals->held_comparisons, "held address", "held addresses");
+	}
+	text_put(out, failed ? " are as planned" : " as planned");
+	put_banks(out, proofs, "in");
+}
+
+static void put_every(struct text *out, int64_t count, const char *one, const char *many)
+{
+	if (count == 1)
+		text_printf(out, "every %s", one);
+	else
+		text_printf(out, "every %" PRId64 " %s", count, many);
+}
+
+void put_phase(struct text *out, const struct clock *clock)
+{
+	switch (clock->phase) {
+	case PHASE_FREE: text_put(out, "free"); break;
+	case PHASE_LINES: put_every(out, clock->phase_count, "line", "lines"); break;
+	case PHASE_FRAMES: put_every(out, clock->phase_count, "frame", "frames"); break;
+	}
+}
+
+static void put_cycles(struct text *out, const struct colour_result *colour)
+{
+	if (colour->cycles_per_line.numerator == 0 || colour->cycles_per_frame.numerator == 0) {
+		text_put(out, "cycles a line or frame are too fine to count");
+	} else if (colour->uniform) {
+		put_exact(out, colour->cycles_per_line);
+		text_put(out, " cycles a line");
+	} else {
+		text_put(out, "lines differ, the first has ");
+		put_exact(out, colour->cycles_per_line);
+		text_put(out, " cycles; ");
+		put_exact(out, colour->cycles_per_frame);
+		text_put(out, " cycles a frame");
+	}
+}
+
+static void put_colour(struct text *out, const struct proofs *proofs)
+{
+	const struct colour_result *colour = &proofs->colour;
+	const struct clock *clock = &plan_of(proofs)->clock;
+	if (proofs->proof[PROOF_COLOUR].verdict == VERDICT_ABSENT) {
+		text_put(out, "the plan has no subcarrier");
+		return;
+	}
+	put_cycles(out, colour);
+	if (colour->repeats_known) {
+		text_put(out, "; the phase repeats ");
+		put_every(out, colour->repeats_lines, "line", "lines");
+		text_put(out, " and ");
+		put_every(out, colour->repeats_frames, "frame", "frames");
+	} else {
+		text_put(out, "; the phase repeats too seldom to count");
+	}
+	text_put(out, "; asked: ");
+	put_phase(out, clock);
+}
+
+static void put_longest_way(struct text *out, const struct proofs *proofs)
+{
+	const struct power_up_result *power_up = &proofs->power_up;
+	if (power_up->longest_cells == 0) {
+		text_put(out, ": all are states of the frame");
+		return;
+	}
+	text_put(out, ", the longest way ");
+	text_put_count(out, power_up->longest_cells, "cell", "cells");
+	text_put(out, " (");
+	put_lines(out, power_up->longest_lines);
+	text_put(out, ") from ");
+	put_state(out, proofs, power_up->longest_state);
+	put_bank(out, proofs, power_up->longest_bank);
+}
+
+static void put_power_up(struct text *out, const struct proofs *proofs)
+{
+	const struct power_up_result *power_up = &proofs->power_up;
+	if (power_up->lost_states > 0) {
+		text_printf(out, "%" PRIu64 " of ", power_up->lost_states);
+		text_put_count(out, power_up->states, "state", "states");
+		put_banks(out, proofs, "in");
+		text_put(out, power_up->lost_states == 1 ? " never comes home" : " never come home");
+		return;
+	}
+	text_put(out, "all ");
+	text_put_count(out, power_up->states, "state", "states");
+	put_banks(out, proofs, "in");
+	text_put(out, " come home");
+	put_longest_way(out, proofs);
+}
+
+// " at worst (bit 3 in line 0, cell 5)".
+static void put_worst(struct text *out, const struct proofs *proofs, uint32_t cell, unsigned bit)
+{
+	const struct cell_place place = timeline_place(proofs->timeline, cell);
+	text_printf(out, " at worst (bit %u in line %" PRIu32 ", cell %" PRIu32 ")", bit, place.line, place.cell);
+}
+
+static void put_mean(struct text *out, struct fraction mean)
+{
+	text_put(out, ", ");
+	text_put_rounded(out, mean, PLACES);
+	text_put(out, " in the mean");
+}
+
+static void put_regained(struct text *out, const struct proofs *proofs)
+{
+	const struct upset_result *upset = &proofs->upset;
+	if (upset->worst_cells == 0) {
+		text_put(out, " home at once");
+		return;
+	}
+	text_put(out, " home after ");
+	text_put_count(out, upset->worst_cells, "cell", "cells");
+	put_worst(out, proofs, upset->worst_cell, upset->worst_bit);
+	put_mean(out, upset->mean_cells);
+}
+
+static void put_upset(struct text *out, const struct proofs *proofs)
+{
+	const struct upset_result *upset = &proofs->upset;
+	text_put_count(out, upset->upsets, "flip of one bit", "flips of one bit");
+	text_put(out, proof_failed(proofs, PROOF_UPSET) ? ", some of which never come home; the others" : ":");
+	put_regained(out, proofs);
+	text_put(out, "; the raster ");
+	if (upset->worst_slip_cells == 0) {
+		text_put(out, "does not slip");
+		return;
+	}
+	text_put(out, "slips ");
+	text_put_count(out, upset->worst_slip_cells, "cell", "cells");
+	text_put(out, " (");
+	put_lines(out, upset->worst_slip_lines);
+	text_put(out, ")");
+	put_worst(out, proofs, upset->worst_slip_cell, upset->worst_slip_bit);
+	put_mean(out, upset->mean_slip_cells);
+}
+
+static void put_decoded(struct text *out, const struct glitch_result *glitches)
+{
+	if (!glitches->has_field_signals) {
+		text_put(out, "no signal is decoded from the state");
+		return;
+	}
+	text_put_count(out, glitches->edges, "cell edge", "cell edges");
+	text_printf(out, ", %" PRIu64 " with more than one bit of a decoded field changing; ", glitches->multi_bit_edges);
+	if (glitches->disturbed == 0)
+		text_put(out, "no decoded signal can flicker");
+	else
+		text_put_count(out, glitches->disturbed, "decoded signal may flicker", "decoded signals may flicker");
+}
+
+static void put_glitches(struct text *out, const struct proofs *proofs)
+{
+	const struct glitch_result *glitches = &proofs->glitches;
+	put_decoded(out, glitches);
+	if (!glitches->direct) {
+		text_put(out, glitches->has_field_signals ? "" : ", and the data outputs are latched");
+		return;
+	}
+	text_put(out, "; direct outputs are unsettled for ");
+	text_put_time_in(out, glitches->unsettled_s, UNIT_NANOSECONDS);
+	text_printf(out, " after each edge (%s)", glitches->unsettled_part);
+}
+
+// " of the shortest cell's 628.571 ns", " of 314.286 ns (1/2 of the shortest cell)".
+static void put_available(struct text *out, const struct proofs *proofs)
+{
+	const struct speed_result *speed = &proofs->speed;
+	const struct fraction share = plan_of(proofs)->timing.share;
+	const bool whole = fraction_compare(share, fraction_whole(1)) == 0;
+	text_put(out, whole ? " of the shortest cell's " : " of ");
+	text_put_time_in(out, speed->available_s, UNIT_NANOSECONDS);
+	if (whole)
+		return;
+	text_put(out, " (");
+	text_put_fraction(out, share);
+	text_put(out, " of the shortest cell)");
+}
+
+// "latch 41 + access 150 of rom0 + setup 15 + margin 20", in nanoseconds.
+static void put_sum(struct text *out, const struct proofs *proofs)
+{
+	const struct plan *plan = plan_of(proofs);
+	const struct speed_result *speed = &proofs->speed;
+	text_put(out, speed->second_pass ? "2 x (" : "");
+	text_put(out, plan->machine.advance == ADVANCE_COUNT ? "counter " : "latch ");
+	text_put_time_number(out, speed->delay_s, UNIT_NANOSECONDS);
+	text_put(out, " + access ");
+	text_put_time_number(out, speed->access_s, UNIT_NANOSECONDS);
+	text_printf(out, " of %s%s + setup ", plan->chips[speed->slowest_chip].label, speed->second_pass ? ")" : "");
+	text_put_time_number(out, speed->setup_s, UNIT_NANOSECONDS);
+	text_put(out, " + margin ");
+	text_put_time_number(out, speed->margin_s, UNIT_NANOSECONDS);
+}
+
+static void put_speed(struct text *out, const struct proofs *proofs)
+{
+	const struct speed_result *speed = &proofs->speed;
+	struct fraction slack_s = speed->slack_s;
+	text_put(out, "needed ");
+	text_put_time_in(out, speed->needed_s, UNIT_NANOSECONDS);
+	put_available(out, proofs);
+	text_put(out, ": ");
+	put_sum(out, proofs);
+	text_put(out, slack_s.numerator < 0 ? "; short by " : "; slack ");
+	if (slack_s.numerator < 0)
+		slack_s.numerator = -slack_s.numerator;
+	text_put_time_in(out, slack_s, UNIT_NANOSECONDS);
+}
+
+static void put_asked(struct text *out, struct fraction within_s)
+{
+	text_put(out, "; asked: every ");
+	text_put_time(out, within_s);
+}
+
+static void put_late(struct text *out, const struct sweep *asked, const struct sweep_result *sweep, unsigned bits)
+{
+	struct fraction excess_s;
+	text_put(out, "value ");
+	text_put_hex(out, sweep->worst_value, bits);
+	text_printf(out, " of %s stays away for ", asked->text);
+	text_put_time(out, sweep->worst_gap_s);
+	if (fraction_subtract(sweep->worst_gap_s, sweep->within_s, &excess_s)) {
+		text_put(out, ", ");
+		text_put_time(out, excess_s);
+		text_put(out, " too long");
+	}
+	put_asked(out, sweep->within_s);
+}
+
+static void put_missing(struct text *out, const struct sweep *asked, const struct sweep_result *sweep, unsigned bits)
+{
+	text_printf(out, "%" PRIu64 " of %" PRIu64 " values of %s never come up, the first is ", sweep->missing, sweep->values,
+	            asked->text);
+	text_put_hex(out, sweep->first_missing, bits);
+	put_asked(out, sweep->within_s);
+}
+
+void put_sweep(struct text *out, const struct sweep *asked, const struct sweep_result *sweep)
+{
+	const unsigned bits = asked->high - asked->low + 1;
+	if (sweep->missing > 0) {
+		put_missing(out, asked, sweep, bits);
+		return;
+	}
+	if (!sweep_kept(sweep)) {
+		put_late(out, asked, sweep, bits);
+		return;
+	}
+	text_printf(out, "all %" PRIu64 " values of %s come up at least every ", sweep->values, asked->text);
+	text_put_time(out, sweep->worst_gap_s);
+	text_put(out, ", the slowest ");
+	text_put_hex(out, sweep->worst_value, bits);
+	put_asked(out, sweep->within_s);
+}
+
+static void put_sweeps(struct text *out, const struct proofs *proofs)
+{
+	const size_t count = plan_of(proofs)->sweep_count;
+	size_t kept = 0;
+	if (count == 0) {
+		text_put(out, "the plan asks for none");
+		return;
+	}
+	if (count == 1) {
+		put_sweep(out, &plan_of(proofs)->sweeps[0], &proofs->sweeps[0]);
+		return;
+	}
+	for (size_t index = 0; index < count; index++)
+		kept += sweep_kept(&proofs->sweeps[index]);
+	if (kept == count)
+		text_printf(out, "all %zu sweeps are kept", count);
+	else
+		text_printf(out, "%zu of %zu sweeps are kept", kept, count);
+}
+
+void put_proof_figures(struct text *out, const struct proofs *proofs, enum proof_kind kind)
+{
+	switch (kind) {
+	case PROOF_CLOSURE: put_closure(out, proofs); break;
+	case PROOF_SIGNALS: put_signals(out, proofs); break;
+	case PROOF_COLOUR: put_colour(out, proofs); break;
+	case PROOF_POWER_UP: put_power_up(out, proofs); break;
+	case PROOF_UPSET: put_upset(out, proofs); break;
+	case PROOF_GLITCHES: put_glitches(out, proofs); break;
+	case PROOF_SPEED: put_speed(out, proofs); break;
+	case PROOF_SWEEP: put_sweeps(out, proofs); break;
+	case PROOF_COUNT: break;
+	}
+}

@@ -1,0 +1,262 @@
+#include "base/text.h"
+#include "view/proofs.h"
+#include "view/proofs_shared.h"
+
+static json_t *count(uint64_t value)
+{
+	return json_integer((json_int_t)value);
+}
+
+static json_t *truth(bool value)
+{
+	return json_boolean(value);
+}
+
+static void put_place(json_t **object, const struct timeline *timeline, uint32_t cell)
+{
+	const struct cell_place place = timeline_place(timeline, cell);
+	json_put(object, "line", count(place.line));
+	json_put(object, "line_type", json_string(timeline_line_name(timeline, cell)));
+	json_put(object, "cell", count(place.cell));
+	json_put(object, "region", json_string(timeline_region_name(timeline, cell)));
+	json_put(object, "frame_cell", count(cell));
+}
+
+static void put_chip(json_t **object, const struct plan *plan, const struct byte_place *byte)
+{
+	json_put(object, "chip", json_string(plan->chips[byte->chip].label));
+	json_put(object, "address", count(byte->address));
+	json_put(object, "byte", count(byte->value));
+}
+
+static json_t *counterexample_json(const struct proofs *proofs, enum proof_kind kind)
+{
+	const struct counterexample *found = &proofs->proof[kind].counterexample;
+	const struct plan *plan = plan_of(proofs);
+	json_t *object = json_object();
+	json_put(&object, "what", json_string(found->what));
+	json_put(&object, "bank", count(found->bank));
+	if (!found->present)
+		return object;
+	if (has_place(proofs, kind))
+		put_place(&object, proofs->timeline, found->cell);
+	json_put(&object, "state", count(found->state));
+	if (found->signal != SIZE_MAX)
+		json_put(&object, "signal", json_string(plan->signals[found->signal].name));
+	if (found->byte_known)
+		put_chip(&object, plan, &found->byte);
+	return object;
+}
+
+static void put_closure(json_t **object, const struct proofs *proofs)
+{
+	const struct closure_result *closure = &proofs->closure;
+	struct fraction seconds;
+	json_put(object, "lines", count(closure->lines));
+	json_put(object, "cells", count(closure->cells));
+	json_put(object, "ticks", json_fraction(fraction_whole(closure->ticks)));
+	if (seconds_of_ticks(&plan_of(proofs)->clock, closure->ticks, &seconds))
+		json_put_time(object, "frame", seconds, UNIT_MILLISECONDS);
+	json_put(object, "period_cells", count(closure->period_cells));
+	json_put(object, "start_state", count(closure->start_state));
+	json_put(object, "banks", count(proofs->banks));
+}
+
+static json_t *codes_json(const struct proofs *proofs)
+{
+	const struct plan *plan = plan_of(proofs);
+	json_t *object = json_object();
+	for (size_t signal = 0; signal < plan->signal_count; signal++) {
+		if (plan->signals[signal].origin != FROM_FIELD)
+			continue;
+		json_t *codes = json_array();
+		for (size_t index = 0; index < proofs->code_counts[signal]; index++)
+			json_append(&codes, count(proofs->codes[signal][index]));
+		json_put(&object, plan->signals[signal].name, codes);
+	}
+	return object;
+}
+
+static void put_signals(json_t **object, const struct proofs *proofs)
+{
+	json_put(object, "comparisons", count(proofs->signals.comparisons));
+	json_put(object, "held_comparisons", count(proofs->signals.held_comparisons));
+	json_put(object, "codes", codes_json(proofs));
+}
+
+static json_t *phase_json(const struct clock *clock)
+{
+	struct text words = {0};
+	put_phase(&words, clock);
+	json_t *string = words.failed ? NULL : json_string(text_string(&words));
+	text_release(&words);
+	return string;
+}
+
+static void put_colour(json_t **object, const struct proofs *proofs)
+{
+	const struct colour_result *colour = &proofs->colour;
+	json_put(object, "uniform", truth(colour->uniform));
+	if (colour->cycles_per_line.numerator != 0)
+		json_put_fraction(object, "cycles_per_line", colour->cycles_per_line);
+	if (colour->cycles_per_frame.numerator != 0)
+		json_put_fraction(object, "cycles_per_frame", colour->cycles_per_frame);
+	if (colour->repeats_known) {
+		json_put(object, "repeats_lines", json_integer(colour->repeats_lines));
+		json_put(object, "repeats_frames", json_integer(colour->repeats_frames));
+	}
+	json_put(object, "asked", phase_json(&plan_of(proofs)->clock));
+}
+
+static void put_power_up(json_t **object, const struct proofs *proofs)
+{
+	const struct power_up_result *power_up = &proofs->power_up;
+	json_put(object, "states", count(power_up->states));
+	json_put(object, "frame_states", count(power_up->frame_states));
+	json_put(object, "longest_cells", count(power_up->longest_cells));
+	json_put_fraction(object, "longest_lines", power_up->longest_lines);
+	json_put(object, "longest_state", count(power_up->longest_state));
+	json_put(object, "longest_bank", count(power_up->longest_bank));
+	json_put(object, "lost_states", count(power_up->lost_states));
+	if (power_up->lost_states == 0)
+		return;
+	json_t *loop = json_object();
+	json_put(&loop, "state", count(power_up->second_loop_state));
+	json_put(&loop, "cells", count(power_up->second_loop_cells));
+	json_put(object, "second_loop", loop);
+}
+
+static json_t *flip_json(const struct proofs *proofs, uint32_t cell, unsigned bit)
+{
+	json_t *object = json_object();
+	put_place(&object, proofs->timeline, cell);
+	json_put(&object, "bit", count(bit));
+	return object;
+}
+
+static void put_upset(json_t **object, const struct proofs *proofs)
+{
+	const struct upset_result *upset = &proofs->upset;
+	json_put(object, "upsets", count(upset->upsets));
+	json_put(object, "worst_cells", count(upset->worst_cells));
+	json_put(object, "worst", flip_json(proofs, upset->worst_cell, upset->worst_bit));
+	json_put_fraction(object, "mean_cells", upset->mean_cells);
+	json_put(object, "worst_slip_cells", count(upset->worst_slip_cells));
+	json_put_fraction(object, "worst_slip_lines", upset->worst_slip_lines);
+	json_put(object, "worst_slip", flip_json(proofs, upset->worst_slip_cell, upset->worst_slip_bit));
+	json_put_fraction(object, "mean_slip_cells", upset->mean_slip_cells);
+}
+
+static json_t *edge_json(const struct proofs *proofs, const struct glitch_edge *edge)
+{
+	json_t *object = json_object();
+	json_put(&object, "signal", json_string(plan_of(proofs)->signals[edge->signal].name));
+	json_put(&object, "edges", count(edge->count));
+	put_place(&object, proofs->timeline, edge->cell);
+	json_put(&object, "from_state", count(edge->from_state));
+	json_put(&object, "to_state", count(edge->to_state));
+	json_put(&object, "from_code", count(edge->from_code));
+	json_put(&object, "between_code", count(edge->between_code));
+	json_put(&object, "to_code", count(edge->to_code));
+	return object;
+}
+
+static void put_glitches(json_t **object, const struct proofs *proofs)
+{
+	const struct glitch_result *glitches = &proofs->glitches;
+	json_t *disturbed = json_array();
+	for (size_t index = 0; index < glitches->disturbed; index++)
+		json_append(&disturbed, edge_json(proofs, &glitches->first[index]));
+	json_put(object, "decoded", truth(glitches->has_field_signals));
+	json_put(object, "edges", count(glitches->edges));
+	json_put(object, "multi_bit_edges", count(glitches->multi_bit_edges));
+	json_put(object, "disturbed", disturbed);
+	json_put(object, "direct", truth(glitches->direct));
+	if (!glitches->direct)
+		return;
+	json_put_time(object, "unsettled", glitches->unsettled_s, UNIT_NANOSECONDS);
+	json_put(object, "unsettled_chip", json_string(glitches->unsettled_part));
+}
+
+static void put_speed(json_t **object, const struct proofs *proofs)
+{
+	const struct speed_result *speed = &proofs->speed;
+	json_put_time(object, "cell", speed->cell_s, UNIT_NANOSECONDS);
+	json_put_time(object, "available", speed->available_s, UNIT_NANOSECONDS);
+	json_put_time(object, "delay", speed->delay_s, UNIT_NANOSECONDS);
+	json_put_time(object, "access", speed->access_s, UNIT_NANOSECONDS);
+	json_put_time(object, "setup", speed->setup_s, UNIT_NANOSECONDS);
+	json_put_time(object, "margin", speed->margin_s, UNIT_NANOSECONDS);
+	json_put_time(object, "needed", speed->needed_s, UNIT_NANOSECONDS);
+	json_put_time(object, "slack", speed->slack_s, UNIT_NANOSECONDS);
+	json_put(object, "second_pass", truth(speed->second_pass));
+	json_put(object, "slowest_chip", json_string(plan_of(proofs)->chips[speed->slowest_chip].label));
+}
+
+static json_t *sweep_json(const struct sweep *asked, const struct sweep_result *sweep)
+{
+	json_t *object = json_object();
+	json_put(&object, "bits", json_string(asked->text));
+	json_put(&object, "kept", truth(sweep_kept(sweep)));
+	json_put(&object, "values", count(sweep->values));
+	json_put(&object, "missing", count(sweep->missing));
+	if (sweep->missing > 0)
+		json_put(&object, "first_missing", count(sweep->first_missing));
+	json_put_time(&object, "worst_gap", sweep->worst_gap_s, UNIT_MILLISECONDS);
+	json_put(&object, "worst_value", count(sweep->worst_value));
+	json_put_time(&object, "within", sweep->within_s, UNIT_MILLISECONDS);
+	return object;
+}
+
+static void put_sweeps(json_t **object, const struct proofs *proofs)
+{
+	const struct plan *plan = plan_of(proofs);
+	json_t *sweeps = json_array();
+	for (size_t index = 0; index < plan->sweep_count; index++)
+		json_append(&sweeps, sweep_json(&plan->sweeps[index], &proofs->sweeps[index]));
+	json_put(object, "sweeps", sweeps);
+}
+
+static void put_figures(json_t **object, const struct proofs *proofs, enum proof_kind kind)
+{
+	switch (kind) {
+	case PROOF_CLOSURE: put_closure(object, proofs); break;
+	case PROOF_SIGNALS: put_signals(object, proofs); break;
+	case PROOF_COLOUR: put_colour(object, proofs); break;
+	case PROOF_POWER_UP: put_power_up(object, proofs); break;
+	case PROOF_UPSET: put_upset(object, proofs); break;
+	case PROOF_GLITCHES: put_glitches(object, proofs); break;
+	case PROOF_SPEED: put_speed(object, proofs); break;
+	case PROOF_SWEEP: put_sweeps(object, proofs); break;
+	case PROOF_COUNT: break;
+	}
+}
+
+static json_t *proof_json(const struct proofs *proofs, enum proof_kind kind)
+{
+	static const char *const verdict_words[] = {
+		[VERDICT_PASS] = "pass", [VERDICT_FAIL] = "fail", [VERDICT_ABSENT] = "absent",
+	};
+	const struct proof *proof = &proofs->proof[kind];
+	const char *reason = reason_of(proofs, kind);
+	json_t *object = json_object();
+	json_put(&object, "verdict", json_string(verdict_words[proof->verdict]));
+	json_put(&object, "must", truth(proof_is_must(kind)));
+	if (reason != NULL) {
+		json_put(&object, "reason", json_string(reason));
+		return object;
+	}
+	if (proof->verdict != VERDICT_ABSENT)
+		put_figures(&object, proofs, kind);
+	if (proof->verdict == VERDICT_FAIL && proof->counterexample.what != NULL)
+		json_put(&object, "counterexample", counterexample_json(proofs, kind));
+	return object;
+}
+
+json_t *view_proofs_json(const struct proofs *proofs)
+{
+	json_t *object = json_object();
+	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
+		json_put(&object, proof_name(kind), proof_json(proofs, kind));
+	return object;
+}

@@ -1,0 +1,226 @@
+#include "view/proofs.h"
+
+#include <inttypes.h>
+
+#include "base/text.h"
+#include "view/proofs_shared.h"
+
+// Columns: the verdict at 0, the name at 6, the figures at 16. Details stand below the name.
+#define VERDICT_CHARACTERS 4
+#define NAME_CHARACTERS 8
+#define GAP 2
+#define FIGURES_INDENT (VERDICT_CHARACTERS + GAP + NAME_CHARACTERS + GAP)
+#define DETAIL_INDENT (VERDICT_CHARACTERS + GAP)
+#define DETAIL_WRAPPED_INDENT (DETAIL_INDENT + 2)
+
+struct report {
+	struct text *out;
+	struct text words;           // of the line that is being made
+	const struct proofs *proofs;
+	bool colour;
+};
+
+struct verdict_row {
+	const char *word;
+	const char *colour;
+};
+
+static const struct verdict_row pass_row = {"pass", "\033[1;32m"};
+static const struct verdict_row fail_row = {"FAIL", "\033[1;31m"};
+static const struct verdict_row miss_row = {"miss", "\033[1;33m"};
+static const struct verdict_row none_row = {"none", NULL};
+
+static const struct verdict_row *row_of_verdict(const struct proofs *proofs, enum proof_kind kind)
+{
+	switch (proofs->proof[kind].verdict) {
+	case VERDICT_PASS: return &pass_row;
+	case VERDICT_FAIL: return proof_is_must(kind) ? &fail_row : &miss_row;
+	case VERDICT_ABSENT: break;
+	}
+	return &none_row;
+}
+
+// Puts the words that were made, and makes room for the next.
+static void put_words(struct report *report, size_t used, size_t indent)
+{
+	text_put_wrapped(report->out, text_string(&report->words), used, indent);
+	text_put(report->out, "\n");
+	report->words.length = 0;
+	text_put(&report->words, "");
+}
+
+static void end_detail(struct report *report)
+{
+	text_put_repeated(report->out, ' ', DETAIL_INDENT);
+	put_words(report, DETAIL_INDENT, DETAIL_WRAPPED_INDENT);
+}
+
+static void put_verdict(struct report *report, enum proof_kind kind)
+{
+	const struct verdict_row *row = row_of_verdict(report->proofs, kind);
+	const char *name = proof_name(kind);
+	const bool colour = report->colour && row->colour != NULL;
+	text_printf(report->out, "%s%s%s", colour ? row->colour : "", row->word, colour ? "\033[0m" : "");
+	text_put_repeated(report->out, ' ', GAP);
+	text_printf(report->out, "%-*s", NAME_CHARACTERS + GAP, name);
+}
+
+// "line 17 (picture), cell 3 (sync)".
+static void put_place(struct text *words, const struct timeline *timeline, uint32_t cell)
+{
+	const struct cell_place place = timeline_place(timeline, cell);
+	text_printf(words, "line %" PRIu32 " (%s), cell %" PRIu32 " (%s)", place.line, timeline_line_name(timeline, cell),
+	            place.cell, timeline_region_name(timeline, cell));
+}
+
+static void put_state(struct report *report, uint32_t state)
+{
+	text_put(&report->words, "state ");
+	text_put_hex(&report->words, state, state_bits(report->proofs));
+}
+
+static void put_bank(struct report *report, uint32_t bank)
+{
+	if (report->proofs->banks > 1)
+		text_printf(&report->words, ", bank %" PRIu32, bank);
+}
+
+static void put_byte(struct report *report, const struct byte_place *byte)
+{
+	const struct chip *chip = &plan_of(report->proofs)->chips[byte->chip];
+	text_put(&report->words, chip->part->data_pins > 8 ? "word " : "byte ");
+	text_put_hex(&report->words, byte->value, chip->part->data_pins);
+	text_put(&report->words, " at address ");
+	text_put_hex(&report->words, byte->address, chip->part->address_pins);
+	text_printf(&report->words, " of chip %s", chip->label);
+}
+
+// Where the fault shows; if no byte is to blame, in which state.
+static void detail_place(struct report *report, const struct counterexample *found)
+{
+	text_put(&report->words, "at ");
+	put_place(&report->words, report->proofs->timeline, found->cell);
+	text_printf(&report->words, "; cell %" PRIu32 " of the frame", found->cell);
+	put_bank(report, found->bank);
+	if (!found->byte_known) {
+		text_put(&report->words, ", ");
+		put_state(report, found->state);
+	}
+	end_detail(report);
+}
+
+// Where the fault comes from.
+static void detail_byte(struct report *report, const struct counterexample *found)
+{
+	text_put(&report->words, "row of ");
+	put_state(report, found->state);
+	if (found->signal != SIZE_MAX)
+		text_printf(&report->words, ", which sets %s", plan_of(report->proofs)->signals[found->signal].name);
+	text_put(&report->words, ": ");
+	put_byte(report, &found->byte);
+	end_detail(report);
+}
+
+static void detail_counterexample(struct report *report, enum proof_kind kind)
+{
+	const struct counterexample *found = &report->proofs->proof[kind].counterexample;
+	if (found->what != NULL) {
+		text_put(&report->words, found->what);
+		end_detail(report);
+	}
+	if (has_place(report->proofs, kind))
+		detail_place(report, found);
+	if (found->present && found->byte_known)
+		detail_byte(report, found);
+}
+
+static void detail_second_loop(struct report *report)
+{
+	const struct power_up_result *power_up = &report->proofs->power_up;
+	text_put(&report->words, "a second loop of ");
+	text_put_count(&report->words, power_up->second_loop_cells, "cell", "cells");
+	text_put(&report->words, " goes through ");
+	put_state(report, power_up->second_loop_state);
+	put_bank(report, report->proofs->proof[PROOF_POWER_UP].counterexample.bank);
+	end_detail(report);
+}
+
+static void detail_glitch(struct report *report, const struct glitch_edge *edge)
+{
+	struct text *words = &report->words;
+	text_printf(words, "%s may flicker at ", plan_of(report->proofs)->signals[edge->signal].name);
+	text_put_count(words, edge->count, "edge", "edges");
+	text_put(words, edge->count == 1 ? ", where " : ", first where ");
+	put_place(words, report->proofs->timeline, edge->cell);
+	text_printf(words, " begins: code %" PRIu32 " to %" PRIu32 ", between them %" PRIu32 "; ", edge->from_code, edge->to_code,
+	            edge->between_code);
+	put_state(report, edge->from_state);
+	text_put(words, " to ");
+	text_put_hex(words, edge->to_state, state_bits(report->proofs));
+	end_detail(report);
+}
+
+static void detail_sweeps(struct report *report)
+{
+	const struct plan *plan = plan_of(report->proofs);
+	for (size_t index = 0; plan->sweep_count > 1 && index < plan->sweep_count; index++) {
+		put_sweep(&report->words, &plan->sweeps[index], &report->proofs->sweeps[index]);
+		end_detail(report);
+	}
+	if (has_place(report->proofs, PROOF_SWEEP))
+		detail_place(report, &report->proofs->proof[PROOF_SWEEP].counterexample);
+}
+
+static void put_details(struct report *report, enum proof_kind kind)
+{
+	const struct proofs *proofs = report->proofs;
+	if (kind == PROOF_SWEEP) {
+		detail_sweeps(report);
+	} else if (kind == PROOF_GLITCHES) {
+		for (size_t index = 0; index < proofs->glitches.disturbed; index++)
+			detail_glitch(report, &proofs->glitches.first[index]);
+	} else if (kind == PROOF_POWER_UP && proofs->power_up.lost_states > 0) {
+		detail_second_loop(report);
+	} else if (proof_failed(proofs, kind)) {
+		detail_counterexample(report, kind);
+	}
+}
+
+static void put_proof(struct report *report, enum proof_kind kind)
+{
+	const char *reason = reason_of(report->proofs, kind);
+	put_verdict(report, kind);
+	if (reason != NULL)
+		text_put(&report->words, reason);
+	else
+		put_proof_figures(&report->words, report->proofs, kind);
+	put_words(report, FIGURES_INDENT, FIGURES_INDENT);
+	if (reason == NULL)
+		put_details(report, kind);
+}
+
+// Whether the report names a line: in every place, and with the worst upsets.
+static bool names_lines(const struct proofs *proofs)
+{
+	const struct upset_result *upset = &proofs->upset;
+	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
+		if (proof_failed(proofs, kind) && has_place(proofs, kind))
+			return true;
+	return reason_of(proofs, PROOF_UPSET) == NULL && (upset->worst_cells > 0 || upset->worst_slip_cells > 0);
+}
+
+void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind kind, bool colour)
+{
+	struct report report = {out, {0}, proofs, colour};
+	put_proof(&report, kind);
+	out->failed = out->failed || report.words.failed;
+	text_release(&report.words);
+}
+
+void view_proofs(struct text *out, const struct proofs *proofs, bool colour)
+{
+	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
+		view_proof(out, proofs, kind, colour);
+	if (names_lines(proofs))
+		text_put(out, "Lines and cells are counted from 0.\n");
+}

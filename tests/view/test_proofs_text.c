@@ -1,0 +1,466 @@
+// The report of the proofs for a terminal, word for word, from results that were filled in by hand.
+#include <stdarg.h>
+#include <stddef.h>
+#include <setjmp.h>
+#include <stdint.h>
+#include <cmocka.h>
+
+#include "base/text.h"
+#include "harbour_proofs.h"
+#include "view/proofs.h"
+
+static void assert_report(const struct harbour *harbour, bool colour, const char *expected)
+{
+	struct text out = {0};
+	view_proofs(&out, &harbour->proofs, colour);
+	assert_false(out.failed);
+	assert_string_equal(text_string(&out), expected);
+	text_release(&out);
+}
+
+static void assert_proof(const struct harbour *harbour, enum proof_kind kind, const char *expected)
+{
+	struct text out = {0};
+	view_proof(&out, &harbour->proofs, kind, false);
+	assert_false(out.failed);
+	assert_string_equal(text_string(&out), expected);
+	text_release(&out);
+}
+
+// Cell 300 is cell 98 of line 2, cell 107 cell 6 of line 1. 1/3 is 0.333, 50/101 is 0.495.
+static void a_good_plan_has_a_line_for_each_proof(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	assert_report(&harbour, false,
+		"pass  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x8000 after 16.688 ms\n"
+		"pass  signals   132310 pin levels and 17280 held addresses as planned\n"
+		"pass  colour    228 cycles a line; the phase repeats every line and every frame; asked: every line\n"
+		"pass  power-up  all 65536 states come home, the longest way 1 cell (1/101 line) from state 0x0000\n"
+		"pass  upset     423392 flips of one bit: home after 101 cells at worst (bit 14 in line 2, cell 98),\n"
+		"                1.02 in the mean; the raster slips 50 cells (0.495 lines) at worst (bit 3 in line 1,\n"
+		"                cell 6), 0.333 in the mean\n"
+		"pass  glitches  26462 cell edges, 0 with more than one bit of a decoded field changing; no decoded\n"
+		"                signal can flicker\n"
+		"pass  speed     needed 226 ns of the shortest cell's 628.571 ns: latch 41 + access 150 of rom0 +\n"
+		"                setup 15 + margin 20; slack 402.571 ns\n"
+		"pass  sweep     all 128 values of at.6..0 come up at least every 1.2 ms, the slowest 0x7F; asked:\n"
+		"                every 2 ms\n"
+		"Lines and cells are counted from 0.\n");
+}
+
+// A counted monochrome board: nothing decoded, no sweep, every state in the frame. No line is named, so nothing is said of them.
+static void what_the_plan_does_not_ask_is_none(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	struct proofs *proofs = &harbour.proofs;
+	harbour.plan.sweep_count = 0;
+	harbour.plan.clock.has_subcarrier = false;
+	harbour.plan.machine.advance = ADVANCE_COUNT;
+	proofs->proof[PROOF_COLOUR].verdict = VERDICT_ABSENT;
+	proofs->proof[PROOF_GLITCHES].verdict = VERDICT_ABSENT;
+	proofs->proof[PROOF_SWEEP].verdict = VERDICT_ABSENT;
+	proofs->glitches.has_field_signals = false;
+	proofs->signals.held_comparisons = 0;
+	proofs->power_up.longest_cells = 0;
+	proofs->upset.worst_cells = proofs->upset.worst_slip_cells = 0;
+	assert_report(&harbour, false,
+		"pass  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x8000 after 16.688 ms\n"
+		"pass  signals   132310 pin levels as planned\n"
+		"none  colour    the plan has no subcarrier\n"
+		"pass  power-up  all 65536 states come home: all are states of the frame\n"
+		"pass  upset     423392 flips of one bit: home at once; the raster does not slip\n"
+		"none  glitches  no signal is decoded from the state, and the data outputs are latched\n"
+		"pass  speed     needed 226 ns of the shortest cell's 628.571 ns: counter 41 + access 150 of rom0 +\n"
+		"                setup 15 + margin 20; slack 402.571 ns\n"
+		"none  sweep     the plan asks for none\n");
+}
+
+// Proofs that could not be judged fail: musts and advice.
+static void only_the_verdict_is_coloured(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour.plan.sweep_count = 0;
+	harbour.proofs.proof[PROOF_SWEEP].verdict = VERDICT_ABSENT;
+	for (enum proof_kind kind = PROOF_SIGNALS; kind <= PROOF_SPEED; kind++)
+		harbour_not_judged(&harbour, kind);
+	assert_report(&harbour, true,
+		"\033[1;32mpass\033[0m  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x8000 after 16.688 ms\n"
+		"\033[1;31mFAIL\033[0m  signals   not judged: the frame does not close\n"
+		"\033[1;31mFAIL\033[0m  colour    not judged: the frame does not close\n"
+		"\033[1;31mFAIL\033[0m  power-up  not judged: the frame does not close\n"
+		"\033[1;33mmiss\033[0m  upset     not judged: the frame does not close\n"
+		"\033[1;33mmiss\033[0m  glitches  not judged: the frame does not close\n"
+		"\033[1;33mmiss\033[0m  speed     not judged: the frame does not close\n"
+		"none  sweep     the plan asks for none\n");
+}
+
+// Upsets that were not judged name no line; the wrong pin does.
+static void a_fault_that_names_a_line_says_how_lines_are_counted(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour.plan.sweep_count = 0;
+	harbour.proofs.proof[PROOF_SWEEP].verdict = VERDICT_ABSENT;
+	for (enum proof_kind kind = PROOF_COLOUR; kind <= PROOF_SPEED; kind++)
+		harbour_not_judged(&harbour, kind);
+	harbour_fails(&harbour, PROOF_SIGNALS, harbour_wrong_sync());
+	assert_report(&harbour, false,
+		"pass  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x8000 after 16.688 ms\n"
+		"FAIL  signals   not all of 132310 pin levels and 17280 held addresses are as planned\n"
+		"      sync is low, expected high\n"
+		"      at line 17 (border), cell 3 (sync); cell 1720 of the frame\n"
+		"      row of state 0x06B7, which sets sync: byte 0x5F at address 0x106B7 of chip rom0\n"
+		"FAIL  colour    not judged: the frame does not close\n"
+		"FAIL  power-up  not judged: the frame does not close\n"
+		"miss  upset     not judged: the frame does not close\n"
+		"miss  glitches  not judged: the frame does not close\n"
+		"miss  speed     not judged: the frame does not close\n"
+		"none  sweep     the plan asks for none\n"
+		"Lines and cells are counted from 0.\n");
+}
+
+static void several_banks_are_named(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour.proofs.banks = 4;
+	harbour.proofs.power_up.longest_bank = 3;
+	assert_proof(&harbour, PROOF_CLOSURE,
+		"pass  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x8000 after 16.688 ms in each\n"
+		"                of 4 banks\n");
+	assert_proof(&harbour, PROOF_SIGNALS,
+		"pass  signals   132310 pin levels and 17280 held addresses as planned in 4 banks\n");
+	assert_proof(&harbour, PROOF_POWER_UP,
+		"pass  power-up  all 65536 states in 4 banks come home, the longest way 1 cell (1/101 line) from\n"
+		"                state 0x0000 in bank 3\n");
+	struct counterexample found = harbour_wrong_sync();
+	found.bank = 2;
+	harbour_fails(&harbour, PROOF_SIGNALS, found);
+	assert_proof(&harbour, PROOF_SIGNALS,
+		"FAIL  signals   not all of 132310 pin levels and 17280 held addresses are as planned in 4 banks\n"
+		"      sync is low, expected high\n"
+		"      at line 17 (border), cell 3 (sync); cell 1720 of the frame, bank 2\n"
+		"      row of state 0x06B7, which sets sync: byte 0x5F at address 0x106B7 of chip rom0\n");
+}
+
+// All lines alike: the states run through one line only.
+static void a_frame_that_repeats_says_after_how_many_cells(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour.proofs.closure.period_cells = 101;
+	assert_proof(&harbour, PROOF_CLOSURE,
+		"pass  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x8000 after 16.688 ms; the\n"
+		"                states repeat every 101 cells\n");
+}
+
+// The last cell of the frame is cell 100 of line 261. A word of rom1 is to blame.
+static void a_frame_that_does_not_close_is_shown(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour.proofs.closure = (struct closure_result){.ticks = 238941, .start_state = 0x8000};
+	harbour_fails(&harbour, PROOF_CLOSURE, (struct counterexample){.present = true, .cell = 26461, .state = 0x675D,
+		.signal = SIZE_MAX, .byte_known = true, .byte = {CHIP_ROM1, 0x675D, 0xC1},
+		.what = "the next state after the frame's 26462 cells is 0xC1, expected the first state 0x8000"});
+	assert_proof(&harbour, PROOF_CLOSURE,
+		"FAIL  closure   the machine does not keep to the frame of 262 lines, 26462 cells, 238944 ticks\n"
+		"      the next state after the frame's 26462 cells is 0xC1, expected the first state 0x8000\n"
+		"      at line 261 (border), cell 100 (picture); cell 26461 of the frame\n"
+		"      row of state 0x675D: word 0x00C1 at address 0x675D of chip rom1\n");
+}
+
+static void a_long_detail_wraps_two_further_in(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	struct counterexample found = harbour_wrong_sync();
+	found.what = "sync is low, expected high: top is 0x5, which stands for low elsewhere in the frame of the harbour's board";
+	harbour_fails(&harbour, PROOF_SIGNALS, found);
+	assert_proof(&harbour, PROOF_SIGNALS,
+		"FAIL  signals   not all of 132310 pin levels and 17280 held addresses are as planned\n"
+		"      sync is low, expected high: top is 0x5, which stands for low elsewhere in the frame of the\n"
+		"        harbour's board\n"
+		"      at line 17 (border), cell 3 (sync); cell 1720 of the frame\n"
+		"      row of state 0x06B7, which sets sync: byte 0x5F at address 0x106B7 of chip rom0\n");
+}
+
+// 909 ticks a line are 909/4 cycles; four lines, or two frames of 119079/2 cycles, are whole. Line 1 begins with cell 101.
+static void a_phase_that_does_not_repeat_is_shown(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour.proofs.colour = (struct colour_result){true, {909, 4}, {119079, 2}, true, 4, 2};
+	harbour.plan.clock.phase_count = 2;
+	harbour_fails(&harbour, PROOF_COLOUR, (struct counterexample){.present = true, .cell = 101, .state = 0x0065,
+		.signal = SIZE_MAX, .what = "2 lines from line 1 on take 1818 ticks, which are 909/2 subcarrier cycles, "
+		"expected a whole number"});
+	assert_proof(&harbour, PROOF_COLOUR,
+		"FAIL  colour    909/4 (227.25) cycles a line; the phase repeats every 4 lines and every 2 frames;\n"
+		"                asked: every 2 lines\n"
+		"      2 lines from line 1 on take 1818 ticks, which are 909/2 subcarrier cycles, expected a whole\n"
+		"        number\n"
+		"      at line 1 (border), cell 0 (front porch); cell 101 of the frame, state 0x0065\n");
+}
+
+static void colour_names_what_is_asked(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	struct proofs *proofs = &harbour.proofs;
+	proofs->colour = (struct colour_result){false, {683, 3}, {178946, 3}, true, 786, 3};
+	harbour.plan.clock.phase = PHASE_FREE;
+	assert_proof(&harbour, PROOF_COLOUR,
+		"pass  colour    lines differ, the first has 683/3 (227.666667) cycles; 178946/3 (59648.666667)\n"
+		"                cycles a frame; the phase repeats every 786 lines and every 3 frames; asked: free\n");
+	proofs->colour = (struct colour_result){true, {0, 1}, {0, 1}, false, 0, 0};
+	harbour.plan.clock.phase = PHASE_FRAMES;
+	assert_proof(&harbour, PROOF_COLOUR,
+		"pass  colour    cycles a line or frame are too fine to count; the phase repeats too seldom to count;\n"
+		"                asked: every frame\n");
+	harbour.plan.clock.phase_count = 3;
+	proofs->colour.cycles_per_line = (struct fraction){228, 1};
+	proofs->colour.cycles_per_frame = (struct fraction){59736, 1};
+	assert_proof(&harbour, PROOF_COLOUR,
+		"pass  colour    228 cycles a line; the phase repeats too seldom to count; asked: every 3 frames\n");
+}
+
+static void a_second_loop_is_shown(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	struct power_up_result *power_up = &harbour.proofs.power_up;
+	power_up->lost_states = 17;
+	power_up->second_loop_state = 0x12;
+	power_up->second_loop_cells = 3;
+	harbour_fails(&harbour, PROOF_POWER_UP, (struct counterexample){.present = true, .bank = 1, .state = 0x12,
+		.signal = SIZE_MAX, .what = "17 states are lost"});
+	assert_proof(&harbour, PROOF_POWER_UP,
+		"FAIL  power-up  17 of 65536 states never come home\n"
+		"      a second loop of 3 cells goes through state 0x0012\n");
+	harbour.proofs.banks = 2;
+	power_up->lost_states = 1;
+	power_up->second_loop_cells = 1;
+	assert_proof(&harbour, PROOF_POWER_UP,
+		"FAIL  power-up  1 of 65536 states in 2 banks never comes home\n"
+		"      a second loop of 1 cell goes through state 0x0012, bank 1\n");
+}
+
+// 2617 cells of 101 a line are 25.911 lines; 303 are 3.
+static void long_ways_home_count_lines(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	struct power_up_result *power_up = &harbour.proofs.power_up;
+	power_up->longest_cells = 2617;
+	power_up->longest_lines = (struct fraction){2617, 101};
+	power_up->longest_state = 0xFFFF;
+	assert_proof(&harbour, PROOF_POWER_UP,
+		"pass  power-up  all 65536 states come home, the longest way 2617 cells (25.911 lines) from state\n"
+		"                0xFFFF\n");
+	power_up->longest_cells = 303;
+	power_up->longest_lines = (struct fraction){3, 1};
+	assert_proof(&harbour, PROOF_POWER_UP,
+		"pass  power-up  all 65536 states come home, the longest way 303 cells (3 lines) from state 0xFFFF\n");
+	power_up->longest_cells = 101;
+	power_up->longest_lines = (struct fraction){1, 1};
+	assert_proof(&harbour, PROOF_POWER_UP,
+		"pass  power-up  all 65536 states come home, the longest way 101 cells (1 line) from state 0xFFFF\n");
+}
+
+// Cell 1823 is cell 5 of line 18, the first of type "picture".
+static void an_upset_that_never_comes_home_is_shown(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour_fails(&harbour, PROOF_UPSET, (struct counterexample){.present = true, .cell = 1823, .state = 0x8005,
+		.signal = SIZE_MAX, .what = "with bit 3 flipped, state 0x8005 becomes 0x800D, from which the frame is never "
+		"regained"});
+	assert_proof(&harbour, PROOF_UPSET,
+		"miss  upset     423392 flips of one bit, some of which never come home; the others home after 101\n"
+		"                cells at worst (bit 14 in line 2, cell 98), 1.02 in the mean; the raster slips 50\n"
+		"                cells (0.495 lines) at worst (bit 3 in line 1, cell 6), 0.333 in the mean\n"
+		"      with bit 3 flipped, state 0x8005 becomes 0x800D, from which the frame is never regained\n"
+		"      at line 18 (picture), cell 5 (sync); cell 1823 of the frame, state 0x8005\n");
+}
+
+// Cell 1839 is cell 21 of line 18. State 0xA123 has code 5 in its upper three bits, 0x4456 code 2; 7 differs from both.
+static void disturbed_signals_show_their_first_edge(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	struct glitch_result *glitches = &harbour.proofs.glitches;
+	glitches->disturbed = 2;
+	glitches->multi_bit_edges = 432;
+	harbour.edges[0] = (struct glitch_edge){SIGNAL_LOAD, 1839, 0xA123, 0x4456, 5, 2, 7, 216};
+	harbour.edges[1] = (struct glitch_edge){SIGNAL_BURST, 0, 0x2000, 0xE000, 1, 7, 3, 1};
+	harbour_fails(&harbour, PROOF_GLITCHES, (struct counterexample){.present = true, .cell = 1839, .state = 0xA123,
+		.signal = SIGNAL_LOAD, .what = "load may flicker"});
+	assert_proof(&harbour, PROOF_GLITCHES,
+		"miss  glitches  26462 cell edges, 432 with more than one bit of a decoded field changing; 2 decoded\n"
+		"                signals may flicker\n"
+		"      load may flicker at 216 edges, first where line 18 (picture), cell 21 (picture) begins: code 5\n"
+		"        to 2, between them 7; state 0xA123 to 0x4456\n"
+		"      burst may flicker at 1 edge, where line 0 (border), cell 0 (front porch) begins: code 1 to 7,\n"
+		"        between them 3; state 0x2000 to 0xE000\n");
+	glitches->disturbed = 1;
+	assert_proof(&harbour, PROOF_GLITCHES,
+		"miss  glitches  26462 cell edges, 432 with more than one bit of a decoded field changing; 1 decoded\n"
+		"                signal may flicker\n"
+		"      load may flicker at 216 edges, first where line 18 (picture), cell 21 (picture) begins: code 5\n"
+		"        to 2, between them 7; state 0xA123 to 0x4456\n");
+}
+
+static void direct_outputs_are_unsettled(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	struct glitch_result *glitches = &harbour.proofs.glitches;
+	glitches->has_field_signals = false;
+	glitches->direct = true;
+	glitches->unsettled_s = (struct fraction){191, 1000000000};
+	glitches->unsettled_part = "rom1";
+	assert_proof(&harbour, PROOF_GLITCHES,
+		"pass  glitches  no signal is decoded from the state; direct outputs are unsettled for 191 ns after\n"
+		"                each edge (rom1)\n");
+}
+
+// Half of the cell is 314.286 ns. Twice 41 + 150, and 15 + 20, are 417 ns: 102.714 ns too much.
+static void too_slow_a_chip_says_by_how_much(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	struct speed_result *speed = &harbour.proofs.speed;
+	harbour.plan.timing.share = (struct fraction){1, 2};
+	harbour.plan.machine.advance = ADVANCE_COUNT;
+	speed->available_s = (struct fraction){11, 35000000};
+	speed->second_pass = true;
+	speed->slowest_chip = CHIP_ROM1;
+	speed->needed_s = (struct fraction){417, 1000000000};
+	speed->slack_s = (struct fraction){-719, 7000000000};
+	harbour.proofs.proof[PROOF_SPEED].verdict = VERDICT_FAIL;
+	assert_proof(&harbour, PROOF_SPEED,
+		"miss  speed     needed 417 ns of 314.286 ns (1/2 of the shortest cell): 2 x (counter 41 + access 150\n"
+		"                of rom1) + setup 15 + margin 20; short by 102.714 ns\n");
+}
+
+// The gap is 3 ms of 2 ms; it ends in cell 500, which is cell 96 of line 4.
+static void a_late_value_is_shown_where_it_comes_up_again(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour.sweep_results[0].worst_gap_s = (struct fraction){3, 1000};
+	harbour.sweep_results[0].worst_value = 5;
+	harbour_fails(&harbour, PROOF_SWEEP, (struct counterexample){.present = true, .cell = 500, .state = 0x1F4,
+		.signal = SIZE_MAX, .what = "value 5 comes up late"});
+	assert_proof(&harbour, PROOF_SWEEP,
+		"FAIL  sweep     value 0x05 of at.6..0 stays away for 3 ms, 1 ms too long; asked: every 2 ms\n"
+		"      at line 4 (border), cell 96 (picture); cell 500 of the frame, state 0x01F4\n");
+}
+
+// A gap that rounds to what is asked still shows by how much it is too long: 2 ms and 1/100 ns.
+static void a_gap_that_is_a_trifle_too_long_shows_it(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour.sweep_results[0].worst_gap_s = (struct fraction){200000001, 100000000000};
+	harbour_fails(&harbour, PROOF_SWEEP, (struct counterexample){.signal = SIZE_MAX, .what = "late"});
+	assert_proof(&harbour, PROOF_SWEEP,
+		"FAIL  sweep     value 0x7F of at.6..0 stays away for 2 ms, 0.01 ns too long; asked: every 2 ms\n");
+}
+
+static void missing_values_are_counted(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour.sweep_results[0].missing = 5;
+	harbour.sweep_results[0].first_missing = 0x12;
+	harbour_fails(&harbour, PROOF_SWEEP, (struct counterexample){.signal = SIZE_MAX, .what = "5 values never come up"});
+	assert_proof(&harbour, PROOF_SWEEP,
+		"FAIL  sweep     5 of 128 values of at.6..0 never come up, the first is 0x12; asked: every 2 ms\n");
+	// A sweep that was not judged counts no values.
+	harbour.sweep_results[0] = (struct sweep_result){.worst_gap_s = {0, 1}, .within_s = {1, 500}};
+	harbour_not_judged(&harbour, PROOF_SWEEP);
+	assert_proof(&harbour, PROOF_SWEEP, "FAIL  sweep     not judged: the frame does not close\n");
+}
+
+static void several_sweeps_have_a_line_each(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour.plan.sweep_count = 2;
+	assert_proof(&harbour, PROOF_SWEEP,
+		"pass  sweep     all 2 sweeps are kept\n"
+		"      all 128 values of at.6..0 come up at least every 1.2 ms, the slowest 0x7F; asked: every 2 ms\n"
+		"      all 16 values of scan come up at least every 508 us, the slowest 0x2; asked: every 2 ms\n");
+	harbour.sweep_results[1].missing = 1;
+	harbour.sweep_results[1].first_missing = 0xF;
+	harbour_fails(&harbour, PROOF_SWEEP, (struct counterexample){.signal = SIZE_MAX, .what = "1 value never comes up"});
+	assert_proof(&harbour, PROOF_SWEEP,
+		"FAIL  sweep     1 of 2 sweeps are kept\n"
+		"      all 128 values of at.6..0 come up at least every 1.2 ms, the slowest 0x7F; asked: every 2 ms\n"
+		"      1 of 16 values of scan never come up, the first is 0xF; asked: every 2 ms\n");
+}
+
+// A state of 10 bits has three digits.
+static void states_are_as_wide_as_the_latch(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	harbour.plan.machine.state_bits = 10;
+	harbour.proofs.closure.start_state = 7;
+	assert_proof(&harbour, PROOF_CLOSURE,
+		"pass  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x007 after 16.688 ms\n");
+}
+
+int main(void)
+{
+	const struct CMUnitTest tests[] = {
+		cmocka_unit_test(a_good_plan_has_a_line_for_each_proof),
+		cmocka_unit_test(what_the_plan_does_not_ask_is_none),
+		cmocka_unit_test(only_the_verdict_is_coloured),
+		cmocka_unit_test(a_fault_that_names_a_line_says_how_lines_are_counted),
+		cmocka_unit_test(several_banks_are_named),
+		cmocka_unit_test(a_frame_that_repeats_says_after_how_many_cells),
+		cmocka_unit_test(a_frame_that_does_not_close_is_shown),
+		cmocka_unit_test(a_long_detail_wraps_two_further_in),
+		cmocka_unit_test(a_phase_that_does_not_repeat_is_shown),
+		cmocka_unit_test(colour_names_what_is_asked),
+		cmocka_unit_test(a_second_loop_is_shown),
+		cmocka_unit_test(long_ways_home_count_lines),
+		cmocka_unit_test(an_upset_that_never_comes_home_is_shown),
+		cmocka_unit_test(disturbed_signals_show_their_first_edge),
+		cmocka_unit_test(direct_outputs_are_unsettled),
+		cmocka_unit_test(too_slow_a_chip_says_by_how_much),
+		cmocka_unit_test(a_late_value_is_shown_where_it_comes_up_again),
+		cmocka_unit_test(a_gap_that_is_a_trifle_too_long_shows_it),
+		cmocka_unit_test(missing_values_are_counted),
+		cmocka_unit_test(several_sweeps_have_a_line_each),
+		cmocka_unit_test(states_are_as_wide_as_the_latch),
+	};
+	return cmocka_run_group_tests(tests, NULL, NULL);
+}
