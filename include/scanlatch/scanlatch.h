@@ -1,0 +1,135 @@
+/* scanlatch: from a plan of video lines to proved EEPROM images.
+ *
+ * Objects are opaque. There is no global state; the library never prints and never exits. Any function may be called from two
+ * threads at once on different objects. Strings returned as `char *` belong to the caller and are freed with scanlatch_free.
+ * Every function that can fail says how; running out of memory is a failure like others and leaves arguments as they were.
+ */
+#ifndef SCANLATCH_SCANLATCH_H
+#define SCANLATCH_SCANLATCH_H
+
+#include <stdbool.h>
+#include <stddef.h>
+#include <stdint.h>
+
+#ifdef __cplusplus
+extern "C" {
+#endif
+
+#define SCANLATCH_VERSION "0.1.0"
+
+/* The version of the library that is linked, as SCANLATCH_VERSION. Cannot fail. */
+const char *scanlatch_version(void);
+
+/* Frees a string that the library returned. NULL is allowed. */
+void scanlatch_free(char *string);
+
+/* ---- Messages: what was wrong or worth saying, with places in the plan ---- */
+
+typedef struct scanlatch_messages scanlatch_messages;
+
+/* NULL when memory is out. */
+scanlatch_messages *scanlatch_messages_create(void);
+void scanlatch_messages_destroy(scanlatch_messages *messages);
+
+size_t scanlatch_messages_count(const scanlatch_messages *messages);
+size_t scanlatch_messages_errors(const scanlatch_messages *messages);
+/* True if an error is a refusal of the system (memory, reading, writing) and not a fault of the input. */
+bool scanlatch_messages_system(const scanlatch_messages *messages);
+
+/* All messages as text, in file order. NULL when memory is out. */
+char *scanlatch_messages_text(const scanlatch_messages *messages, bool colour);
+
+/* ---- Plans ---- */
+
+typedef struct scanlatch_plan scanlatch_plan;
+
+/* The largest plan, in bytes. A reader of files may stop there. */
+#define SCANLATCH_PLAN_BYTES (1024 * 1024)
+
+/* Reads a plan from memory (copied) and lays out its timeline. `name` is what messages call it; its last part becomes the
+ * manifest's file name. NULL after adding at least one error to messages. The messages keep the text, so they must outlive the plan. */
+scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t length, scanlatch_messages *messages);
+/* The same from a file; "-" is standard input. */
+scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *messages);
+void scanlatch_plan_destroy(scanlatch_plan *plan);
+
+/* The plan's name, as file names use it. Owned by the plan. Cannot fail. */
+const char *scanlatch_plan_name(const scanlatch_plan *plan);
+
+size_t scanlatch_plan_chips(const scanlatch_plan *plan);
+/* Label and capacity in bytes of chip 0 … chips-1. Owned by the plan. Cannot fail. */
+const char *scanlatch_plan_chip_label(const scanlatch_plan *plan, size_t chip);
+size_t scanlatch_plan_chip_bytes(const scanlatch_plan *plan, size_t chip);
+
+/* What `scanlatch check` reports. *kept (may be NULL) is set to false if the colour phase, which is a must, is not what the plan
+ * demands, *advice_kept if the speed does not suffice. NULL when memory is out. */
+char *scanlatch_plan_text(const scanlatch_plan *plan, bool *kept, bool *advice_kept);
+/* The same as a JSON document. */
+char *scanlatch_plan_json(const scanlatch_plan *plan, bool *kept, bool *advice_kept);
+
+/* ---- Images: the bytes of every chip of a plan ---- */
+
+typedef struct scanlatch_images scanlatch_images;
+
+/* Chooses states, fills the tables and makes the images of a plan. NULL after adding an error to messages (a plan for which no states
+ * can be found). The plan must outlive the images. */
+scanlatch_images *scanlatch_images_make(const scanlatch_plan *plan, scanlatch_messages *messages);
+
+/* An empty set of images of a plan, to be read from files. NULL when memory is out. */
+scanlatch_images *scanlatch_images_create(const scanlatch_plan *plan);
+void scanlatch_images_destroy(scanlatch_images *images);
+
+/* Reads a chip's bytes from a file's content, binary or Intel HEX, told apart by content. `file` is what messages call it. A chip
+ * may be read from two files, which must agree. False after adding an error. */
+bool scanlatch_images_read(scanlatch_images *images, const char *label, const char *file, const void *bytes, size_t length,
+                           scanlatch_messages *messages);
+
+/* The same from a file; "-" is standard input. */
+bool scanlatch_images_read_file(scanlatch_images *images, const char *label, const char *path, scanlatch_messages *messages);
+
+/* Reads every chip's NAME.LABEL.bin and NAME.LABEL.hex, whichever are there, from a folder. False after adding an error. */
+bool scanlatch_images_read_folder(scanlatch_images *images, const char *folder, scanlatch_messages *messages);
+
+/* True if every chip has its bytes; otherwise adds an error for each that has not. */
+bool scanlatch_images_complete(const scanlatch_images *images, scanlatch_messages *messages);
+
+/* The bytes of a chip, whole capacity. Owned by the images; NULL if they were not read. */
+const uint8_t *scanlatch_images_bytes(const scanlatch_images *images, size_t chip, size_t *length);
+
+/* A chip's image as Intel HEX with records of 16 or 32 data bytes. NULL when memory is out. */
+char *scanlatch_images_hex(const scanlatch_images *images, size_t chip, unsigned record, size_t *length);
+
+/* Every row of the frame as text. Only for images that were made, not read; NULL otherwise and when memory is out. */
+char *scanlatch_images_listing(const scanlatch_images *images);
+
+/* ---- Proofs ---- */
+
+typedef struct scanlatch_proofs scanlatch_proofs;
+
+/* Simulates the machine from the images' bytes and proves it against the plan. The images must be complete and outlive the proofs.
+ * NULL when memory is out. */
+scanlatch_proofs *scanlatch_prove(const scanlatch_images *images);
+void scanlatch_proofs_destroy(scanlatch_proofs *proofs);
+
+/* True if a must failed or, with strict, anything that is advice. Cannot fail. */
+bool scanlatch_proofs_failed(const scanlatch_proofs *proofs, bool strict);
+
+/* The report, a line for each proof. NULL when memory is out. */
+char *scanlatch_proofs_text(const scanlatch_proofs *proofs, bool colour);
+char *scanlatch_proofs_json(const scanlatch_proofs *proofs);
+
+/* The manifest of a build, as a JSON document. Which files were written for each chip: bit 0 .bin, bit 1 .hex. NULL when memory is out. */
+enum { SCANLATCH_FILE_BIN = 1, SCANLATCH_FILE_HEX = 2 };
+char *scanlatch_manifest(const scanlatch_proofs *proofs, unsigned files);
+
+/* ---- Catalogue ---- */
+
+/* The catalogue of parts as text or JSON. NULL when memory is out. */
+char *scanlatch_parts_text(void);
+char *scanlatch_parts_json(void);
+
+#ifdef __cplusplus
+}
+#endif
+
+#endif

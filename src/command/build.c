@@ -1,0 +1,360 @@
+#include <getopt.h>
+#include <jansson.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+#include <unistd.h>
+
+#include "base/arena.h"
+#include "base/file.h"
+#include "command/command.h"
+
+static const char help[] =
+	"Usage: scanlatch build [options] PLAN... -o DIR\n"
+	"\n"
+	"Lays out each plan, chooses states, fills the tables and proves the images as they will be on disk.\n"
+	"Then writes NAME.LABEL.bin and NAME.LABEL.hex for each chip and NAME.manifest.json into DIR, which is\n"
+	"made if it is not there. If a must fails, nothing is written. PLAN may be - for standard input.\n"
+	"\n"
+	"Options:\n"
+	"  -o, --output DIR   where the images go\n"
+	"      --format LIST  bin, hex or bin,hex (the default)\n"
+	"      --record N     data bytes in a record of Intel HEX: 16 (the default) or 32\n"
+	"      --listing      write NAME.lst too: every row of the frame\n"
+	"      --unproven     write even if a proof fails; the exit code is still 1\n"
+	"      --strict       advice that fails counts like a must\n"
+	"      --json         one JSON document instead of text (a list of them for several plans)\n"
+	"      --color WHEN   auto, always or never\n"
+	"  -h, --help         print this help\n"
+	"  -V, --version      print the version\n";
+
+static const struct option long_options[] = {
+	COMMON_LONG_OPTIONS,
+	{"output", required_argument, NULL, 'o'},
+	{"format", required_argument, NULL, OPTION_FORMAT},
+	{"record", required_argument, NULL, OPTION_RECORD},
+	{"listing", no_argument, NULL, OPTION_LISTING},
+	{"unproven", no_argument, NULL, OPTION_UNPROVEN},
+	{"strict", no_argument, NULL, OPTION_STRICT},
+	{NULL, 0, NULL, 0},
+};
+
+struct build_options {
+	struct common_options common;
+	const char *directory;
+	unsigned files; // SCANLATCH_FILE_BIN, SCANLATCH_FILE_HEX
+	unsigned record;
+	bool listing;
+	bool unproven;
+};
+
+// A plan on its way to its files.
+struct job {
+	scanlatch_messages *messages;
+	scanlatch_plan *plan;
+	scanlatch_images *made;    // by the planner
+	scanlatch_images *proved;  // read back from the bytes of the files
+	scanlatch_proofs *proofs;
+	bool failed;               // a proof that counts failed
+	size_t first_file, file_count; // in the build's files
+};
+
+#define MOST_FILES (2 * 16 + 2) // of a plan: two for each chip, manifest and listing
+
+struct build {
+	const struct build_options *options;
+	struct arena *arena;
+	struct job *jobs;
+	size_t job_count;
+	struct output_file *files; // of all jobs, in order
+	char **owned;              // [file_count]: the bytes of a file if they are a string to be freed
+	size_t file_count;
+	struct progress progress;
+};
+
+// Adds a file NAME.LABEL.ENDING (or NAME.ENDING without label); `owned` is freed with the build. False when memory is out.
+static bool add_file(struct build *build, const struct job *job, const char *label, const char *ending, const void *bytes, size_t length,
+                     char *owned)
+{
+	const char *plan = scanlatch_plan_name(job->plan);
+	build->owned[build->file_count] = owned;
+	struct output_file *file = &build->files[build->file_count++];
+	file->name = label != NULL ? arena_format(build->arena, "%s.%s.%s", plan, label, ending) : arena_format(build->arena, "%s.%s", plan, ending);
+	file->bytes = bytes;
+	file->length = length;
+	return file->name != NULL && bytes != NULL;
+}
+
+static bool add_image_files(struct build *build, struct job *job)
+{
+	const struct build_options *options = build->options;
+	bool good = true;
+	for (size_t chip = 0; good && chip < scanlatch_plan_chips(job->plan); chip++) {
+		const char *label = scanlatch_plan_chip_label(job->plan, chip);
+		size_t length;
+		const uint8_t *bytes = scanlatch_images_bytes(job->made, chip, &length);
+		if ((options->files & SCANLATCH_FILE_BIN) != 0)
+			good = add_file(build, job, label, "bin", bytes, length, NULL);
+		if (good && (options->files & SCANLATCH_FILE_HEX) != 0) {
+			char *hex = scanlatch_images_hex(job->made, chip, options->record, &length);
+			good = add_file(build, job, label, "hex", hex, length, hex);
+		}
+	}
+	return good;
+}
+
+// Reads the images back from the bytes that the files will have. False after adding messages.
+static bool read_back(const struct build *build, struct job *job)
+{
+	size_t file = job->first_file;
+	for (size_t chip = 0; chip < scanlatch_plan_chips(job->plan); chip++)
+		for (unsigned format = SCANLATCH_FILE_BIN; format <= SCANLATCH_FILE_HEX; format <<= 1) {
+			if ((build->options->files & format) == 0)
+				continue;
+			const struct output_file *made = &build->files[file++];
+			if (!scanlatch_images_read(job->proved, scanlatch_plan_chip_label(job->plan, chip), made->name, made->bytes, made->length,
+			                           job->messages))
+				return false;
+		}
+	return scanlatch_images_complete(job->proved, job->messages);
+}
+
+// Files that speak of the images: the manifest and, if asked, the listing. False when memory is out.
+static bool add_report_files(struct build *build, struct job *job)
+{
+	char *manifest = scanlatch_manifest(job->proofs, build->options->files);
+	if (!add_file(build, job, NULL, "manifest.json", manifest, manifest != NULL ? strlen(manifest) : 0, manifest))
+		return false;
+	if (!build->options->listing)
+		return true;
+	char *listing = scanlatch_images_listing(job->made);
+	return add_file(build, job, NULL, "lst", listing, listing != NULL ? strlen(listing) : 0, listing);
+}
+
+// Makes and proves a plan's images. Returns an exit code other than EXIT_FOUND; job->failed says how the proofs went.
+static int make_images(struct build *build, struct job *job, const char *path)
+{
+	job->first_file = build->file_count;
+	progress_begin(&build->progress, "planning");
+	job->plan = scanlatch_plan_read_file(path, job->messages);
+	job->made = job->plan != NULL ? scanlatch_images_make(job->plan, job->messages) : NULL;
+	if (job->made == NULL)
+		return EXIT_BAD;
+	job->proved = scanlatch_images_create(job->plan);
+	if (job->proved == NULL || !add_image_files(build, job))
+		return EXIT_SYSTEM;
+	if (!read_back(build, job))
+		return EXIT_BAD;
+	progress_begin(&build->progress, "proving");
+	job->proofs = scanlatch_prove(job->proved);
+	if (job->proofs == NULL || !add_report_files(build, job))
+		return EXIT_SYSTEM;
+	job->failed = scanlatch_proofs_failed(job->proofs, build->options->common.strict);
+	job->file_count = build->file_count - job->first_file;
+	return EXIT_GOOD;
+}
+
+static int run_job(struct build *build, struct job *job, const char *path)
+{
+	job->messages = scanlatch_messages_create();
+	if (job->messages == NULL)
+		return memory_error();
+	const int code = make_images(build, job, path);
+	progress_end(&build->progress);
+	const int message_code = print_messages(job->messages, build->options->common.colour);
+	if (code == EXIT_SYSTEM && message_code == EXIT_GOOD)
+		return memory_error();
+	return code == EXIT_GOOD ? message_code : worse(message_code, message_code == EXIT_GOOD ? code : EXIT_GOOD);
+}
+
+// Two plans of one name would write the same files.
+static bool names_differ(const struct build *build)
+{
+	for (size_t left = 0; left < build->job_count; left++)
+		for (size_t right = left + 1; right < build->job_count; right++) {
+			const scanlatch_plan *first = build->jobs[left].plan, *second = build->jobs[right].plan;
+			if (first == NULL || second == NULL || strcmp(scanlatch_plan_name(first), scanlatch_plan_name(second)) != 0)
+				continue;
+			usage_error("build", "two plans have the name \"%s\" and would write the same files", scanlatch_plan_name(first));
+			return false;
+		}
+	return true;
+}
+
+static bool any_failed(const struct build *build)
+{
+	for (size_t index = 0; index < build->job_count; index++)
+		if (build->jobs[index].failed)
+			return true;
+	return false;
+}
+
+static int write_files(const struct build *build)
+{
+	struct write_failure failure;
+	if (file_write_all(build->arena, build->options->directory, build->files, build->file_count, &failure))
+		return EXIT_GOOD;
+	fprintf(stderr, "scanlatch: cannot %s %s: %s; nothing was written\n", failure.step, failure.path, strerror(failure.error));
+	return EXIT_SYSTEM;
+}
+
+static void print_text(const struct build *build, bool written)
+{
+	for (size_t index = 0; index < build->job_count; index++) {
+		const struct job *job = &build->jobs[index];
+		printf("%s%s\n", index == 0 ? "" : "\n", scanlatch_plan_name(job->plan));
+		print_string(scanlatch_proofs_text(job->proofs, colour_on(build->options->common.colour, STDOUT_FILENO)));
+		for (size_t file = job->first_file; written && file < job->first_file + job->file_count; file++)
+			printf("%-5s %s/%s (%zu bytes)\n", build->files[file].kept ? "kept" : "wrote", build->options->directory,
+			       build->files[file].name, build->files[file].length);
+		if (job->failed)
+			printf("%s\n", written ? "written though a proof failed, as asked by --unproven"
+			                       : "a proof failed: nothing was written (--unproven writes all the same)");
+	}
+	if (!written && build->job_count > 1)
+		puts("nothing was written");
+}
+
+static json_t *job_json(const struct build *build, const struct job *job, bool written)
+{
+	json_t *files = json_array();
+	for (size_t file = job->first_file; written && file < job->first_file + job->file_count; file++)
+		json_array_append_new(files, json_pack("{s:s, s:I, s:b}", "name", build->files[file].name, "bytes",
+		                                       (json_int_t)build->files[file].length, "kept", (int)build->files[file].kept));
+	char *manifest = scanlatch_manifest(job->proofs, build->options->files);
+	json_t *document = json_pack("{s:s, s:b, s:o, s:o}", "name", scanlatch_plan_name(job->plan), "written", (int)written, "files", files,
+	                             "manifest", manifest != NULL ? json_loads(manifest, 0, NULL) : NULL);
+	scanlatch_free(manifest);
+	return document;
+}
+
+static int print_json(const struct build *build, bool written)
+{
+	json_t *document = build->job_count > 1 ? json_array() : job_json(build, &build->jobs[0], written);
+	for (size_t index = 0; build->job_count > 1 && index < build->job_count; index++)
+		json_array_append_new(document, job_json(build, &build->jobs[index], written));
+	if (document == NULL)
+		return memory_error();
+	json_dumpf(document, stdout, JSON_INDENT(2) | JSON_REAL_PRECISION(12));
+	puts("");
+	json_decref(document);
+	return EXIT_GOOD;
+}
+
+// Everything is made and proved: writes what may be written, and reports.
+static int finish(const struct build *build)
+{
+	const bool failed = any_failed(build);
+	const bool write = !failed || build->options->unproven;
+	const int written = write ? write_files(build) : EXIT_GOOD;
+	int printed = EXIT_GOOD;
+	if (build->options->common.json)
+		printed = print_json(build, write && written == EXIT_GOOD);
+	else
+		print_text(build, write && written == EXIT_GOOD);
+	return worse(worse(written, printed), failed ? EXIT_FOUND : EXIT_GOOD);
+}
+
+static int build_plans(const struct build_options *options, char **paths, size_t count)
+{
+	struct build build = {
+		.options = options, .arena = arena_create(), .job_count = count, .progress = PROGRESS_NONE};
+	if (build.arena == NULL)
+		return memory_error();
+	build.jobs = arena_array(build.arena, count, sizeof *build.jobs);
+	build.files = arena_array(build.arena, count, MOST_FILES * sizeof *build.files);
+	build.owned = arena_array(build.arena, count, MOST_FILES * sizeof *build.owned);
+	int code = build.jobs != NULL && build.files != NULL && build.owned != NULL ? EXIT_GOOD : memory_error();
+	for (size_t index = 0; code != EXIT_SYSTEM && index < count; index++)
+		code = worse(code, run_job(&build, &build.jobs[index], paths[index]));
+	if (code == EXIT_GOOD)
+		code = names_differ(&build) ? finish(&build) : EXIT_BAD;
+	for (size_t index = 0; index < build.file_count; index++)
+		scanlatch_free(build.owned[index]);
+	for (size_t index = 0; build.jobs != NULL && index < count; index++) {
+		scanlatch_proofs_destroy(build.jobs[index].proofs);
+		scanlatch_images_destroy(build.jobs[index].proved);
+		scanlatch_images_destroy(build.jobs[index].made);
+		scanlatch_plan_destroy(build.jobs[index].plan);
+		scanlatch_messages_destroy(build.jobs[index].messages);
+	}
+	arena_destroy(build.arena);
+	return code;
+}
+
+static bool take_format(struct build_options *options, const char *value)
+{
+	options->files = 0;
+	const char *rest = value;
+	do {
+		const size_t length = strcspn(rest, ",");
+		if (length == 3 && strncmp(rest, "bin", 3) == 0)
+			options->files |= SCANLATCH_FILE_BIN;
+		else if (length == 3 && strncmp(rest, "hex", 3) == 0)
+			options->files |= SCANLATCH_FILE_HEX;
+		else {
+			usage_error("build", "--format: wanted bin, hex or bin,hex, found \"%s\"", value);
+			return false;
+		}
+		rest += length;
+	} while (*rest++ == ',');
+	return true;
+}
+
+static bool take_record(struct build_options *options, const char *value)
+{
+	if (strcmp(value, "16") != 0 && strcmp(value, "32") != 0) {
+		usage_error("build", "--record: wanted 16 or 32, found \"%s\"", value);
+		return false;
+	}
+	options->record = strcmp(value, "32") == 0 ? 32 : 16;
+	return true;
+}
+
+// Takes one option. False after saying why its value is wrong.
+static bool take_option(struct build_options *options, int option)
+{
+	switch (option) {
+	case 'o':
+		options->directory = optarg;
+		return true;
+	case OPTION_FORMAT:
+		return take_format(options, optarg);
+	case OPTION_RECORD:
+		return take_record(options, optarg);
+	case OPTION_LISTING:
+		options->listing = true;
+		return true;
+	case OPTION_UNPROVEN:
+		options->unproven = true;
+		return true;
+	case OPTION_STRICT:
+		options->common.strict = true;
+		return true;
+	default:
+		return take_common_option(&options->common, option, optarg, "build");
+	}
+}
+
+int command_build(int argument_count, char **arguments)
+{
+	struct build_options options = {.files = SCANLATCH_FILE_BIN | SCANLATCH_FILE_HEX, .record = 16};
+	int option;
+	while ((option = getopt_long(argument_count, arguments, "hVo:", long_options, NULL)) != -1) {
+		if (option == 'h') {
+			fputs(help, stdout);
+			return EXIT_GOOD;
+		}
+		if (option == 'V')
+			return print_version();
+		if (option == '?')
+			return option_error("build ");
+		if (!take_option(&options, option))
+			return EXIT_BAD;
+	}
+	if (optind == argument_count)
+		return usage_error("build", "wanted at least one plan, found none");
+	if (options.directory == NULL || options.directory[0] == '\0')
+		return usage_error("build", "wanted -o DIR, the folder that the images go to");
+	return build_plans(&options, arguments + optind, (size_t)(argument_count - optind));
+}

@@ -1,0 +1,92 @@
+// The commands: each parses its own options and returns the program's exit code.
+#ifndef SCANLATCH_COMMAND_COMMAND_H
+#define SCANLATCH_COMMAND_COMMAND_H
+
+#include <pthread.h>
+#include <stdbool.h>
+#include <stddef.h>
+
+#include "scanlatch/scanlatch.h"
+
+// The same in every command (design page 3).
+enum exit_code {
+	EXIT_GOOD = 0,   // nothing wrong
+	EXIT_FOUND = 1,  // it ran and found something
+	EXIT_BAD = 2,    // the plan, image or command line is bad
+	EXIT_SYSTEM = 3, // the system refused
+};
+
+enum colour_choice { COLOUR_AUTO, COLOUR_ALWAYS, COLOUR_NEVER };
+
+// The options that commands share.
+struct common_options {
+	enum colour_choice colour;
+	bool json;
+	bool strict;
+};
+
+struct command {
+	const char *name;
+	const char *summary;
+	int (*run)(int argument_count, char **arguments);
+};
+
+extern const struct command commands[];
+extern const size_t command_count;
+
+int command_build(int argument_count, char **arguments);
+int command_check(int argument_count, char **arguments);
+int command_list(int argument_count, char **arguments);
+int command_prove(int argument_count, char **arguments);
+
+// Short options that every command has; long ones are COMMON_LONG_OPTIONS. Values above any character stand for long-only options.
+enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING };
+
+#define COMMON_LONG_OPTIONS                                                                                                \
+	{"help", no_argument, NULL, 'h'}, {"version", no_argument, NULL, 'V'}, {"color", required_argument, NULL, OPTION_COLOUR}, \
+		{"json", no_argument, NULL, OPTION_JSON}
+
+// Handles an option that commands share. False after saying why it is wrong (a bad value).
+bool take_common_option(struct common_options *options, int option, const char *value, const char *command);
+
+// Prints the version to standard output and gives the exit code.
+int print_version(void);
+
+// "scanlatch COMMAND: …" and where to find help, on standard error. Returns EXIT_BAD.
+__attribute__((format(printf, 2, 3)))
+int usage_error(const char *command, const char *format, ...);
+
+// What getopt_long's '?' and ':' mean is printed by getopt itself; this adds where to find help. Returns EXIT_BAD.
+int option_error(const char *command);
+
+bool colour_on(enum colour_choice choice, int descriptor);
+
+// Prints messages to standard error and gives the exit code that their errors ask for: EXIT_GOOD without errors.
+int print_messages(const scanlatch_messages *messages, enum colour_choice colour);
+
+// Writes a string to standard output and frees it; "memory is out" if it is NULL. Returns EXIT_GOOD or EXIT_SYSTEM.
+int print_string(char *string);
+
+// "scanlatch: memory is out" on standard error. Returns EXIT_SYSTEM.
+int memory_error(void);
+
+// The worse of two exit codes: a refusal of the system before bad input before findings. Cannot fail.
+int worse(int left, int right);
+
+// Shows on standard error, if it is a terminal and work takes over half a second, what is going on.
+struct progress {
+	pthread_t thread;
+	pthread_mutex_t lock;
+	pthread_cond_t ended;
+	bool running;     // the thread exists
+	bool over;        // the thread is to end
+	const char *work; // a constant
+};
+
+#define PROGRESS_NONE {.lock = PTHREAD_MUTEX_INITIALIZER, .ended = PTHREAD_COND_INITIALIZER}
+
+// Names the work that begins now. The progress must stay where it is until progress_end.
+void progress_begin(struct progress *progress, const char *work);
+void progress_end(struct progress *progress);
+
+#endif

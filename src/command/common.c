@@ -1,0 +1,86 @@
+#include <stdarg.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+#include <unistd.h>
+
+#include "command/command.h"
+
+bool take_common_option(struct common_options *options, int option, const char *value, const char *command)
+{
+	if (option == OPTION_JSON) {
+		options->json = true;
+		return true;
+	}
+	static const char *const words[] = {[COLOUR_AUTO] = "auto", [COLOUR_ALWAYS] = "always", [COLOUR_NEVER] = "never"};
+	for (size_t index = 0; index < sizeof words / sizeof *words; index++)
+		if (strcmp(value, words[index]) == 0) {
+			options->colour = (enum colour_choice)index;
+			return true;
+		}
+	usage_error(command, "--color: wanted auto, always or never, found \"%s\"", value);
+	return false;
+}
+
+int print_version(void)
+{
+	printf("scanlatch %s\n", scanlatch_version());
+	return EXIT_GOOD;
+}
+
+int option_error(const char *command)
+{
+	fprintf(stderr, "scanlatch: try \"scanlatch %s--help\"\n", command);
+	return EXIT_BAD;
+}
+
+int usage_error(const char *command, const char *format, ...)
+{
+	va_list arguments;
+	fprintf(stderr, "scanlatch %s: ", command);
+	va_start(arguments, format);
+	vfprintf(stderr, format, arguments);
+	va_end(arguments);
+	fprintf(stderr, "\nscanlatch: try \"scanlatch %s --help\"\n", command);
+	return EXIT_BAD;
+}
+
+bool colour_on(enum colour_choice choice, int descriptor)
+{
+	const char *no_colour = getenv("NO_COLOR");
+	if (choice != COLOUR_AUTO)
+		return choice == COLOUR_ALWAYS;
+	return (no_colour == NULL || no_colour[0] == '\0') && isatty(descriptor) == 1;
+}
+
+int memory_error(void)
+{
+	fputs("scanlatch: memory is out\n", stderr);
+	return EXIT_SYSTEM;
+}
+
+int print_messages(const scanlatch_messages *messages, enum colour_choice colour)
+{
+	char *text = scanlatch_messages_text(messages, colour_on(colour, STDERR_FILENO));
+	if (text == NULL)
+		return memory_error();
+	fputs(text, stderr);
+	scanlatch_free(text);
+	if (scanlatch_messages_errors(messages) == 0)
+		return EXIT_GOOD;
+	return scanlatch_messages_system(messages) ? EXIT_SYSTEM : EXIT_BAD;
+}
+
+int print_string(char *string)
+{
+	if (string == NULL)
+		return memory_error();
+	fputs(string, stdout);
+	scanlatch_free(string);
+	return EXIT_GOOD;
+}
+
+int worse(int left, int right)
+{
+	return left > right ? left : right;
+}

@@ -1,0 +1,127 @@
+#include <getopt.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+#include <sys/stat.h>
+#include <unistd.h>
+
+#include "command/command.h"
+
+static const char help[] =
+	"Usage: scanlatch prove [options] PLAN FOLDER\n"
+	"       scanlatch prove [options] PLAN LABEL=FILE...\n"
+	"\n"
+	"Reads images and proves them against their plan. FOLDER holds NAME.LABEL.bin or NAME.LABEL.hex (or\n"
+	"both, which must agree) for each chip of the plan, as build writes them. FILE is binary or Intel HEX,\n"
+	"told apart by content, for the chip with that LABEL; - is standard input.\n"
+	"\n"
+	"Options:\n"
+	"      --json         one JSON document instead of text\n"
+	"      --strict       advice that fails counts like a must: exit code 1\n"
+	"      --color WHEN   auto, always or never\n"
+	"  -h, --help         print this help\n"
+	"  -V, --version      print the version\n";
+
+static const struct option long_options[] = {
+	COMMON_LONG_OPTIONS,
+	{"strict", no_argument, NULL, OPTION_STRICT},
+	{NULL, 0, NULL, 0},
+};
+
+static bool is_folder(const char *path)
+{
+	struct stat status;
+	return stat(path, &status) == 0 && S_ISDIR(status.st_mode);
+}
+
+// Reads LABEL=FILE arguments. False if one could not be read; the messages say why.
+static bool read_files(scanlatch_images *images, char **arguments, int count, scanlatch_messages *messages)
+{
+	bool good = true;
+	for (int index = 0; index < count; index++) {
+		char *equals = strchr(arguments[index], '=');
+		*equals = '\0';
+		good = scanlatch_images_read_file(images, arguments[index], equals + 1, messages) && good;
+		*equals = '=';
+	}
+	return good && scanlatch_images_complete(images, messages);
+}
+
+static int report_proofs(const scanlatch_images *images, const struct common_options *options)
+{
+	struct progress progress = PROGRESS_NONE;
+	progress_begin(&progress, "proving");
+	scanlatch_proofs *proofs = scanlatch_prove(images);
+	progress_end(&progress);
+	if (proofs == NULL)
+		return memory_error();
+	int code = print_string(options->json ? scanlatch_proofs_json(proofs)
+	                                      : scanlatch_proofs_text(proofs, colour_on(options->colour, STDOUT_FILENO)));
+	if (code == EXIT_GOOD && scanlatch_proofs_failed(proofs, options->strict))
+		code = EXIT_FOUND;
+	scanlatch_proofs_destroy(proofs);
+	return code;
+}
+
+static int prove(const char *path, char **arguments, int count, const struct common_options *options, scanlatch_messages *messages)
+{
+	scanlatch_plan *plan = scanlatch_plan_read_file(path, messages);
+	scanlatch_images *images = plan != NULL ? scanlatch_images_create(plan) : NULL;
+	int code = EXIT_GOOD;
+	if (plan != NULL && images == NULL)
+		code = memory_error();
+	if (images != NULL && is_folder(arguments[0]))
+		scanlatch_images_read_folder(images, arguments[0], messages);
+	else if (images != NULL)
+		read_files(images, arguments, count, messages);
+	code = worse(code, print_messages(messages, options->colour));
+	if (code == EXIT_GOOD)
+		code = report_proofs(images, options);
+	scanlatch_images_destroy(images);
+	scanlatch_plan_destroy(plan);
+	return code;
+}
+
+static int check_arguments(char **arguments, int count)
+{
+	if (count < 2)
+		return usage_error("prove", "wanted a plan and images, found %s", count == 0 ? "nothing" : "no images");
+	const bool folder = is_folder(arguments[1]) || strchr(arguments[1], '=') == NULL;
+	if (folder && count > 2)
+		return usage_error("prove", "wanted one folder, or LABEL=FILE for each chip, found \"%s\" and more", arguments[1]);
+	if (folder && !is_folder(arguments[1]))
+		return usage_error("prove", "\"%s\" is not a folder; a single image is given as LABEL=FILE", arguments[1]);
+	for (int index = 1; !folder && index < count; index++)
+		if (strchr(arguments[index], '=') == NULL)
+			return usage_error("prove", "wanted LABEL=FILE, found \"%s\"", arguments[index]);
+	return EXIT_GOOD;
+}
+
+int command_prove(int argument_count, char **arguments)
+{
+	struct common_options options = {0};
+	int option;
+	while ((option = getopt_long(argument_count, arguments, "hV", long_options, NULL)) != -1) {
+		if (option == 'h') {
+			fputs(help, stdout);
+			return EXIT_GOOD;
+		}
+		if (option == 'V')
+			return print_version();
+		if (option == '?')
+			return option_error("prove ");
+		if (option == OPTION_STRICT)
+			options.strict = true;
+		else if (!take_common_option(&options, option, optarg, "prove"))
+			return EXIT_BAD;
+	}
+	int code = check_arguments(arguments + optind, argument_count - optind);
+	if (code != EXIT_GOOD)
+		return code;
+	scanlatch_messages *messages = scanlatch_messages_create();
+	if (messages == NULL)
+		return memory_error();
+	code = prove(arguments[optind], arguments + optind + 1, argument_count - optind - 1, &options, messages);
+	scanlatch_messages_destroy(messages);
+	return code;
+}

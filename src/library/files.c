@@ -1,0 +1,87 @@
+#include <errno.h>
+#include <string.h>
+#include <sys/stat.h>
+
+#include "base/arena.h"
+#include "base/file.h"
+#include "library/library.h"
+
+static bool report(scanlatch_messages *messages, const char *path, enum read_status status, int error, const char *what, size_t limit)
+{
+	const struct place place = {source_of_name(messages, path), 0, 0};
+	if (status == READ_MEMORY || place.source == NULL)
+		diagnose(messages->diagnostics, RULE_OUT_OF_MEMORY, place, "memory is out");
+	else if (status == READ_IS_DIRECTORY)
+		diagnose(messages->diagnostics, RULE_FILE_IS_DIRECTORY, place, "wanted %s, found a directory", what);
+	else if (status == READ_TOO_LARGE)
+		diagnose(messages->diagnostics, RULE_FILE_TOO_LARGE, place, "%s has at most %zu bytes, but this file has more", what, limit);
+	else
+		diagnose(messages->diagnostics, RULE_FILE_UNREADABLE, place, "cannot read %s: %s", what, strerror(error));
+	return false;
+}
+
+// Reads a file into an arena. False after reporting.
+static bool read_file(struct arena *arena, const char *path, const char *what, size_t limit, char **bytes, size_t *length,
+                      scanlatch_messages *messages)
+{
+	const enum read_status status = file_read(arena, path, limit, bytes, length);
+	return status == READ_OK || report(messages, path, status, errno, what, limit);
+}
+
+scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *messages)
+{
+	struct arena *arena = arena_create();
+	char *bytes;
+	size_t length;
+	scanlatch_plan *plan = NULL;
+	if (arena == NULL)
+		report(messages, path, READ_MEMORY, 0, "", 0);
+	else if (read_file(arena, path, "a plan", SCANLATCH_PLAN_BYTES, &bytes, &length, messages))
+		plan = scanlatch_plan_read(path, bytes, length, messages);
+	arena_destroy(arena);
+	return plan;
+}
+
+// Intel HEX takes about 2.8 characters a byte; several times the capacity leaves room for short records.
+static size_t file_limit(const scanlatch_plan *plan)
+{
+	size_t largest = 0;
+	for (size_t chip = 0; chip < scanlatch_plan_chips(plan); chip++)
+		if (scanlatch_plan_chip_bytes(plan, chip) > largest)
+			largest = scanlatch_plan_chip_bytes(plan, chip);
+	return largest * 16 + 65536;
+}
+
+bool scanlatch_images_read_file(scanlatch_images *images, const char *label, const char *path, scanlatch_messages *messages)
+{
+	struct arena *arena = arena_create();
+	char *bytes;
+	size_t length;
+	bool good = false;
+	if (arena == NULL)
+		report(messages, path, READ_MEMORY, 0, "", 0);
+	else if (read_file(arena, path, "an image", file_limit(images->plan), &bytes, &length, messages))
+		good = scanlatch_images_read(images, label, path, bytes, length, messages);
+	arena_destroy(arena);
+	return good;
+}
+
+bool scanlatch_images_read_folder(scanlatch_images *images, const char *folder, scanlatch_messages *messages)
+{
+	static const char *const endings[] = {"bin", "hex"};
+	const scanlatch_plan *plan = images->plan;
+	bool good = true;
+	for (size_t chip = 0; chip < scanlatch_plan_chips(plan); chip++) {
+		for (size_t ending = 0; ending < sizeof endings / sizeof *endings; ending++) {
+			const char *label = scanlatch_plan_chip_label(plan, chip);
+			const char *path = arena_format(images->arena, "%s/%s.%s.%s", folder, scanlatch_plan_name(plan), label, endings[ending]);
+			struct stat status;
+			if (path == NULL)
+				return report(messages, folder, READ_MEMORY, 0, "", 0);
+			if (stat(path, &status) != 0 && errno == ENOENT)
+				continue;
+			good = scanlatch_images_read_file(images, label, path, messages) && good;
+		}
+	}
+	return good && scanlatch_images_complete(images, messages);
+}

@@ -1,0 +1,181 @@
+#include <string.h>
+
+#include "base/arena.h"
+#include "catalogue/catalogue.h"
+#include "image/codec.h"
+#include "library/library.h"
+#include "view/listing.h"
+
+scanlatch_images *scanlatch_images_create(const scanlatch_plan *plan)
+{
+	struct arena *arena = arena_create();
+	scanlatch_images *images = arena != NULL ? arena_alloc(arena, sizeof *images) : NULL;
+	struct image *chips = images != NULL ? arena_array(arena, plan->plan->chip_count, sizeof *chips) : NULL;
+	if (chips == NULL) {
+		arena_destroy(arena);
+		return NULL;
+	}
+	*images = (scanlatch_images){.arena = arena, .plan = plan, .images = chips};
+	return images;
+}
+
+void scanlatch_images_destroy(scanlatch_images *images)
+{
+	if (images == NULL)
+		return;
+	table_destroy(images->table);
+	arena_destroy(images->arena);
+}
+
+static void report_memory(scanlatch_messages *messages)
+{
+	diagnose(messages->diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
+}
+
+scanlatch_images *scanlatch_images_make(const scanlatch_plan *plan, scanlatch_messages *messages)
+{
+	scanlatch_images *images = scanlatch_images_create(plan);
+	if (images == NULL) {
+		report_memory(messages);
+		return NULL;
+	}
+	images->table = table_create(plan->timeline, messages->diagnostics);
+	if (images->table != NULL && images_fill(images->table, images->arena, images->images))
+		return images;
+	if (images->table != NULL)
+		report_memory(messages);
+	scanlatch_images_destroy(images);
+	return NULL;
+}
+
+static size_t find_chip(const struct plan *plan, const char *label)
+{
+	for (size_t chip = 0; chip < plan->chip_count; chip++)
+		if (strcmp(plan->chips[chip].label, label) == 0)
+			return chip;
+	return SIZE_MAX;
+}
+
+static bool report_unknown_chip(const struct plan *plan, struct place place, const char *label, struct diagnostics *diagnostics)
+{
+	diagnose(diagnostics, RULE_IMAGE_UNKNOWN_CHIP, place, "the plan has no chip \"%s\"", label);
+	struct text labels = {0};
+	for (size_t chip = 0; chip < plan->chip_count; chip++)
+		text_printf(&labels, "%s%s", chip == 0 ? "" : ", ", plan->chips[chip].label);
+	diagnose_hint(diagnostics, "its chips are %s", text_string(&labels));
+	text_release(&labels);
+	return false;
+}
+
+static bool decode_hex(const struct chip *chip, struct place place, const void *bytes, size_t length, struct image *image,
+                       struct diagnostics *diagnostics)
+{
+	struct hex_result result = {0};
+	memset(image->bytes, 0xFF, image->length);
+	const enum hex_status status = hex_decode(bytes, length, image->bytes, image->length, &result);
+	place.line = (uint32_t)result.line;
+	place.column = place.line > 0;
+	if (status == HEX_OUT_OF_RANGE)
+		diagnose(diagnostics, RULE_IMAGE_SIZE, place, "data at address 0x%X, but chip \"%s\" (%s) has %zu bytes", (unsigned)result.address,
+		         chip->label, chip->part->name, image->length);
+	else if (status == HEX_MEMORY)
+		diagnose(diagnostics, RULE_OUT_OF_MEMORY, place, "memory is out");
+	else if (status != HEX_OK)
+		diagnose(diagnostics, RULE_IMAGE_FORMAT, place, "Intel HEX: %s", hex_status_words(status));
+	else if (result.missing > 0)
+		diagnose(diagnostics, RULE_IMAGE_GAP, (struct place){place.source, 0, 0},
+		         "Intel HEX leaves %zu bytes of chip \"%s\" out, the first at 0x%X: they are taken as 0xFF (erased)", result.missing,
+		         chip->label, (unsigned)result.first_missing);
+	return status == HEX_OK;
+}
+
+static bool copy_binary(const struct chip *chip, struct place place, const void *bytes, size_t length, struct image *image,
+                        struct diagnostics *diagnostics)
+{
+	if (length == image->length) {
+		memcpy(image->bytes, bytes, length);
+		return true;
+	}
+	diagnose(diagnostics, RULE_IMAGE_SIZE, place, "%zu bytes, but chip \"%s\" (%s) has %zu", length, chip->label, chip->part->name,
+	         image->length);
+	return false;
+}
+
+// Keeps the image of a chip, or compares it with the one that another file gave.
+static bool keep_image(scanlatch_images *images, size_t chip, const struct image *image, struct place place,
+                       struct diagnostics *diagnostics)
+{
+	struct image *kept = &images->images[chip];
+	if (kept->bytes == NULL) {
+		*kept = *image;
+		return true;
+	}
+	if (memcmp(kept->bytes, image->bytes, kept->length) == 0)
+		return true;
+	size_t address = 0;
+	while (kept->bytes[address] == image->bytes[address])
+		address++;
+	diagnose(diagnostics, RULE_IMAGE_DISAGREES, place, "byte 0x%02X at 0x%zX, where another file for chip \"%s\" has 0x%02X",
+	         image->bytes[address], address, images->plan->plan->chips[chip].label, kept->bytes[address]);
+	return false;
+}
+
+bool scanlatch_images_read(scanlatch_images *images, const char *label, const char *file, const void *bytes, size_t length,
+                           scanlatch_messages *messages)
+{
+	const struct plan *plan = images->plan->plan;
+	const struct place place = {source_of_name(messages, file), 0, 0};
+	const size_t index = find_chip(plan, label);
+	if (index == SIZE_MAX)
+		return report_unknown_chip(plan, place, label, messages->diagnostics);
+	const struct chip *chip = &plan->chips[index];
+	struct image image = {.length = chip_bytes(chip)};
+	image.bytes = arena_alloc(images->arena, image.length);
+	if (place.source == NULL || image.bytes == NULL) {
+		report_memory(messages);
+		return false;
+	}
+	const bool good = image_is_hex(bytes, length, image.length)
+	                      ? decode_hex(chip, place, bytes, length, &image, messages->diagnostics)
+	                      : copy_binary(chip, place, bytes, length, &image, messages->diagnostics);
+	return good && keep_image(images, index, &image, place, messages->diagnostics);
+}
+
+bool scanlatch_images_complete(const scanlatch_images *images, scanlatch_messages *messages)
+{
+	const struct plan *plan = images->plan->plan;
+	bool complete = true;
+	for (size_t chip = 0; chip < plan->chip_count; chip++) {
+		if (images->images[chip].bytes != NULL)
+			continue;
+		diagnose(messages->diagnostics, RULE_IMAGE_MISSING, (struct place){plan->source, 0, 0}, "there is no image for chip \"%s\" (%s)",
+		         plan->chips[chip].label, plan->chips[chip].part->name);
+		complete = false;
+	}
+	return complete;
+}
+
+const uint8_t *scanlatch_images_bytes(const scanlatch_images *images, size_t chip, size_t *length)
+{
+	*length = images->images[chip].length;
+	return images->images[chip].bytes;
+}
+
+char *scanlatch_images_hex(const scanlatch_images *images, size_t chip, unsigned record, size_t *length)
+{
+	struct text text = {0};
+	hex_encode(images->images[chip].bytes, images->images[chip].length, record, &text);
+	*length = text.length;
+	if (text.failed)
+		text_release(&text);
+	return text.bytes;
+}
+
+char *scanlatch_images_listing(const scanlatch_images *images)
+{
+	struct text text = {0};
+	if (images->table == NULL)
+		return NULL;
+	view_listing(&text, images->table, images->images);
+	return take_string(&text);
+}

@@ -1,0 +1,47 @@
+// Inside the library: what stands behind the opaque types of scanlatch.h.
+#ifndef SCANLATCH_LIBRARY_LIBRARY_H
+#define SCANLATCH_LIBRARY_LIBRARY_H
+
+#include <jansson.h>
+
+#include "base/text.h"
+#include "image/image.h"
+#include "layout/timeline.h"
+#include "proof/proof.h"
+#include "scanlatch/scanlatch.h"
+#include "table/table.h"
+
+struct scanlatch_messages {
+	struct diagnostics *diagnostics;
+	struct arena *names;       // sources that messages quote: plans and the names of image files
+};
+
+struct scanlatch_plan {
+	struct arena *arena;           // the catalogue
+	const struct source *source;   // owned by the messages that the plan was read with
+	struct plan *plan;
+	struct timeline *timeline;
+};
+
+struct scanlatch_images {
+	struct arena *arena;
+	const scanlatch_plan *plan;
+	struct table *table;       // NULL if the images were read
+	struct image *images;      // [chip_count]; bytes NULL where a chip was not read
+};
+
+struct scanlatch_proofs {
+	const scanlatch_images *images;
+	struct proofs *proofs;
+};
+
+// Takes the bytes of a text as a string of its own; NULL (and the text released) if it failed.
+char *take_string(struct text *text);
+
+// Dumps a document in a stable form, ends it with a newline, and gives up the reference. NULL when memory is out.
+char *take_json(json_t *document);
+
+// A source of a file's name alone, for messages about it; "-" is named standard input. NULL when memory is out.
+const struct source *source_of_name(scanlatch_messages *messages, const char *file);
+
+#endif

@@ -1,0 +1,204 @@
+#include "view/check.h"
+
+#include <inttypes.h>
+
+#include "base/arena.h"
+#include "base/text.h"
+#include "layout/timeline.h"
+#include "proof/proof.h"
+#include "view/columns.h"
+#include "view/figures.h"
+#include "view/proofs.h"
+
+// A line type on its way to a table.
+struct line_view {
+	const struct timeline *timeline;
+	const struct line_type *type;
+	const struct laid_line *laid;
+};
+
+enum { COLUMN_REGION, COLUMN_CELL, COLUMN_CELLS, COLUMN_TICKS, COLUMN_START, COLUMN_LENGTH, COLUMN_ASKED, COLUMN_ROUNDED, COLUMN_ASSERTED };
+
+static const struct column region_columns[] = {
+	[COLUMN_REGION] = {"region", false},       [COLUMN_CELL] = {"cell", true},       [COLUMN_CELLS] = {"cells", true},
+	[COLUMN_TICKS] = {"ticks", true},          [COLUMN_START] = {"start us", true},  [COLUMN_LENGTH] = {"us", true},
+	[COLUMN_ASKED] = {"asked us", true},       [COLUMN_ROUNDED] = {"off by us", true}, [COLUMN_ASSERTED] = {"asserted", false},
+};
+
+// Puts microseconds with three places; "?" for a time that does not fit a fraction.
+static void put_microseconds(struct text *out, const struct clock *clock, struct fraction ticks)
+{
+	struct fraction value;
+	if (fraction_divide(ticks, clock->master_hz, &value) && fraction_multiply(value, fraction_whole(1000000), &value))
+		text_put_decimal(out, value, 3);
+	else
+		text_put(out, "?");
+}
+
+// What the region is longer than asked; 0 for a fill, which takes what there is. False if it does not fit.
+static bool rounding_of(const struct line_view *view, size_t row, struct fraction *ticks)
+{
+	const struct laid_region *laid = &view->laid->regions[row];
+	*ticks = FRACTION_ZERO;
+	return view->type->regions[row].length == LENGTH_FILL || fraction_subtract(fraction_whole(laid->ticks), laid->asked_ticks, ticks);
+}
+
+static void put_asserted(struct text *out, const struct line_view *view, size_t row)
+{
+	const struct plan *plan = view->timeline->plan;
+	const struct laid_region *laid = &view->laid->regions[row];
+	const uint64_t mask = view->type->regions[row].assert_mask;
+	bool first = true;
+	for (size_t signal = 0; signal < plan->signal_count; signal++) {
+		if ((mask >> signal & 1) == 0)
+			continue;
+		text_printf(out, "%s%s", first ? "" : " ", plan->signals[signal].name);
+		first = false;
+	}
+	if (laid->stretched > 0)
+		text_printf(out, "%s(%" PRIu32 " stretched)", first ? "" : " ", laid->stretched);
+}
+
+static void put_region_cell(struct text *out, const void *context, size_t row, size_t column)
+{
+	const struct line_view *view = context;
+	const struct clock *clock = &view->timeline->plan->clock;
+	const struct region *region = &view->type->regions[row];
+	const struct laid_region *laid = &view->laid->regions[row];
+	struct fraction rounding;
+	switch (column) {
+	case COLUMN_REGION:
+		text_put(out, region->name);
+		break;
+	case COLUMN_CELL:
+		text_printf(out, "%" PRIu32, laid->first_cell);
+		break;
+	case COLUMN_CELLS:
+		text_printf(out, "%" PRIu32, laid->cells);
+		break;
+	case COLUMN_TICKS:
+		text_printf(out, "%" PRId64, laid->ticks);
+		break;
+	case COLUMN_START:
+		put_microseconds(out, clock, fraction_whole(laid->start_ticks));
+		break;
+	case COLUMN_LENGTH:
+		put_microseconds(out, clock, fraction_whole(laid->ticks));
+		break;
+	case COLUMN_ASKED:
+		if (region->length == LENGTH_FILL)
+			text_put(out, "fill");
+		else
+			put_microseconds(out, clock, laid->asked_ticks);
+		break;
+	case COLUMN_ROUNDED:
+		if (rounding_of(view, row, &rounding))
+			put_microseconds(out, clock, rounding);
+		break;
+	default:
+		put_asserted(out, view, row);
+	}
+}
+
+// How many lines of the frame have each type. NULL when memory is out.
+static uint32_t *count_uses(const struct timeline *timeline, struct arena *arena)
+{
+	uint32_t *uses = arena_array(arena, timeline->plan->line_count, sizeof *uses);
+	for (uint32_t line = 0; uses != NULL && line < timeline->line_count; line++)
+		uses[timeline->lines[line].type]++;
+	return uses;
+}
+
+static void put_line(struct text *out, const struct timeline *timeline, size_t type, uint32_t uses)
+{
+	const struct line_view view = {timeline, &timeline->plan->lines[type], &timeline->types[type]};
+	const struct columns table = {region_columns, sizeof region_columns / sizeof *region_columns, view.type->region_count,
+	                              put_region_cell, &view};
+	text_printf(out, "\nline \"%s\": ", view.type->name);
+	text_put_count(out, view.laid->cells, "cell", "cells");
+	text_printf(out, ", %" PRId64 " ticks, ", view.laid->ticks);
+	put_microseconds(out, &timeline->plan->clock, fraction_whole(view.laid->ticks));
+	text_put(out, " us; ");
+	text_put_count(out, uses, "line", "lines");
+	text_put(out, " of the frame\n");
+	if (view.laid->auto_stretched > 0)
+		text_printf(out, "stretch: auto chose %" PRIu32 " stretched, the fewest that meet the phase\n", view.laid->auto_stretched);
+	view_columns(out, &table, TERMINAL_CHARACTERS);
+}
+
+static void put_frequency(struct text *out, struct fraction hertz)
+{
+	struct fraction megahertz;
+	text_put_fraction(out, hertz);
+	text_put(out, " Hz");
+	if (fraction_divide(hertz, fraction_whole(1000000), &megahertz)) {
+		text_put(out, " (");
+		text_put_rounded(out, megahertz, 6);
+		text_put(out, " MHz)");
+	}
+}
+
+static void put_head(struct text *out, const struct plan *plan)
+{
+	const struct clock *clock = &plan->clock;
+	text_put(out, plan->name);
+	if (plan->note[0] != '\0')
+		text_printf(out, ": %s", plan->note);
+	text_put(out, "\nclock: ");
+	put_frequency(out, clock->master_hz);
+	if (clock->has_accuracy) {
+		text_put(out, " within ");
+		text_put_rounded(out, clock->accuracy_ppm, 6);
+		text_put(out, " ppm");
+	}
+	text_printf(out, "; a cell is %" PRId64 " ticks", clock->cell_ticks);
+	if (clock->stretch_ticks > 0)
+		text_printf(out, ", stretched %" PRId64, clock->cell_ticks + clock->stretch_ticks);
+	text_put(out, "\n");
+	if (clock->has_subcarrier) {
+		text_put(out, "subcarrier: ");
+		put_frequency(out, clock->subcarrier_hz);
+		text_put(out, "\n");
+	}
+}
+
+static void put_frame(struct text *out, const struct timeline *timeline)
+{
+	struct fraction seconds, rate;
+	text_put(out, "\nframe: ");
+	text_put_count(out, timeline->line_count, "line", "lines");
+	text_printf(out, ", %" PRIu32 " cells, %" PRId64 " ticks", timeline->cell_count, timeline->tick_count);
+	if (seconds_of_ticks(&timeline->plan->clock, timeline->tick_count, &seconds) &&
+	    fraction_divide(fraction_whole(1), seconds, &rate)) {
+		text_put(out, ", ");
+		text_put_time(out, seconds);
+		text_put(out, ", ");
+		text_put_rounded(out, rate, 6);
+		text_put(out, " Hz");
+	}
+	text_put(out, "\n");
+}
+
+bool view_check(struct text *out, const struct timeline *timeline, bool *kept, bool *advice_kept)
+{
+	const struct plan *plan = timeline->plan;
+	struct arena *arena = arena_create();
+	const uint32_t *uses = arena != NULL ? count_uses(timeline, arena) : NULL;
+	struct proofs *proofs = proofs_of_plan(timeline);
+	const bool good = uses != NULL && proofs != NULL;
+	if (good) {
+		put_head(out, plan);
+		for (size_t type = 0; type < plan->line_count; type++)
+			put_line(out, timeline, type, uses[type]);
+		put_frame(out, timeline);
+		view_proof(out, proofs, PROOF_COLOUR, false);
+		view_proof(out, proofs, PROOF_SPEED, false);
+		if (kept != NULL)
+			*kept = !proofs_failed(proofs, false);
+		if (advice_kept != NULL)
+			*advice_kept = !proofs_failed(proofs, true);
+	}
+	proofs_destroy(proofs);
+	arena_destroy(arena);
+	return good;
+}

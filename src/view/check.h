@@ -1,0 +1,28 @@
+// What a plan lays out: lines, regions, positions, roundings, frame, colour and speed.
+#ifndef SCANLATCH_VIEW_CHECK_H
+#define SCANLATCH_VIEW_CHECK_H
+
+#include <jansson.h>
+#include <stdbool.h>
+
+struct text;
+struct timeline;
+
+// Puts the report of `check` for a terminal. *kept (may be NULL): colour is what the plan demands; *advice_kept (may be NULL): the speed
+// suffices. False when memory is out.
+bool view_check(struct text *out, const struct timeline *timeline, bool *kept, bool *advice_kept);
+
+// The same as
+//   { "plan": { "name", "file", "crc32", "note" },
+//     "clock": { "master_hz", "master_mhz", "cell_ticks", "stretch_ticks", "dot_ticks", "accuracy_ppm" (if given),
+//                "subcarrier_hz", "subcarrier_mhz" (if given) },
+//     "lines": [ { "name", "cells", "ticks", "us", "stretched_cells", "used": lines of the frame,
+//                  "regions": [ { "name", "first_cell", "cells", "stretched_cells", "start_ticks", "start_us", "ticks", "us",
+//                                 "asked_ticks", "asked_us", "rounding_ticks", "rounding_us" (not of a fill),
+//                                 "asserted": [signal…] } ] } ],
+//     "frame": see view/manifest.h,
+//     "proofs": { "colour", "speed" } as in view/proofs.h }
+// Exact values are strings (ticks, fractions); rounded ones are numbers. A new reference; NULL when memory is out.
+json_t *view_check_json(const struct timeline *timeline, bool *kept, bool *advice_kept);
+
+#endif
