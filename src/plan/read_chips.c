@@ -233,8 +233,8 @@ static bool read_label(struct reader *reader, const struct node *node, struct ch
 	if (node == NULL || !read_scalar(reader, node, "label", &text))
 		return false;
 	const size_t good = strspn(text, "ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz0123456789_-");
-	if (good != strlen(text) || good > 32) {
-		diagnose(reader->diagnostics, RULE_BAD_NAME, node->place, "label \"%s\": wanted 1 to 32 letters, digits, _ and -", text);
+	if (good != strlen(text) || good > 100) {
+		diagnose(reader->diagnostics, RULE_BAD_NAME, node->place, "label \"%s\": wanted 1 to 100 letters, digits, _ and -", text);
 		return false;
 	}
 	for (size_t other = 0; other < index; other++)

@@ -6,7 +6,7 @@
 #include "plan/expression.h"
 
 #define NAME_CHARACTERS 40
-#define IDENTIFIER_CHARACTERS 40
+#define IDENTIFIER_CHARACTERS 100
 #define WORD_BYTES 48
 
 static const char *const reserved_words[] = {"state", "next", "kind", "bank", "step", "clear", "low", "high"};

@@ -32,7 +32,7 @@ static const struct key plan_keys[PLAN_KEYS] = {
 };
 
 // Longest plan name: with a label and an ending it must still make a file name.
-#define PLAN_NAME_CHARACTERS 64
+#define PLAN_NAME_CHARACTERS 100
 
 static void read_version(struct reader *reader, const struct node *node)
 {

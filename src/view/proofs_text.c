@@ -10,6 +10,8 @@
 #define NAME_CHARACTERS 8
 #define GAP 2
 #define FIGURES_INDENT (VERDICT_CHARACTERS + GAP + NAME_CHARACTERS + GAP)
+// Of a list of codes; JSON has them all.
+#define MOST_CODES 64
 #define DETAIL_INDENT (VERDICT_CHARACTERS + GAP)
 #define DETAIL_WRAPPED_INDENT (DETAIL_INDENT + 2)
 
@@ -171,9 +173,30 @@ static void detail_sweeps(struct report *report)
 		detail_place(report, &report->proofs->proof[PROOF_SWEEP].counterexample);
 }
 
+// The codes that were chosen for `codes: auto`, as read out of the images: what the decoder must be wired for.
+static void detail_codes(struct report *report)
+{
+	const struct proofs *proofs = report->proofs;
+	const struct plan *plan = plan_of(proofs);
+	for (size_t index = 0; index < plan->signal_count; index++) {
+		const struct signal *signal = &plan->signals[index];
+		const size_t count = proofs->code_counts[index];
+		if (signal->origin != FROM_FIELD || !signal->auto_codes)
+			continue;
+		text_printf(&report->words, "%s is asserted in %s of field %s:", signal->name, count == 1 ? "code" : "codes",
+		            plan->machine.fields[signal->field].name);
+		for (size_t code = 0; code < count && code < MOST_CODES; code++)
+			text_printf(&report->words, " %" PRIu32, proofs->codes[index][code]);
+		text_put(&report->words, count == 0 ? " none" : count > MOST_CODES ? " …" : "");
+		end_detail(report);
+	}
+}
+
 static void put_details(struct report *report, enum proof_kind kind)
 {
 	const struct proofs *proofs = report->proofs;
+	if (kind == PROOF_SIGNALS)
+		detail_codes(report);
 	if (kind == PROOF_SWEEP) {
 		detail_sweeps(report);
 	} else if (kind == PROOF_GLITCHES) {
