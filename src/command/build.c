@@ -311,47 +311,28 @@ static bool take_record(struct build_options *options, const char *value)
 	return true;
 }
 
-// Takes one option. False after saying why its value is wrong.
-static bool take_option(struct build_options *options, int option)
+static bool take_option(void *context, int option, const char *value)
 {
-	switch (option) {
-	case 'o':
-		options->directory = optarg;
-		return true;
-	case OPTION_FORMAT:
-		return take_format(options, optarg);
-	case OPTION_RECORD:
-		return take_record(options, optarg);
-	case OPTION_LISTING:
-		options->listing = true;
-		return true;
-	case OPTION_UNPROVEN:
-		options->unproven = true;
-		return true;
-	case OPTION_STRICT:
-		options->common.strict = true;
-		return true;
-	default:
-		return take_common_option(&options->common, option, optarg, "build");
-	}
+	struct build_options *options = context;
+	if (option == OPTION_FORMAT)
+		return take_format(options, value);
+	if (option == OPTION_RECORD)
+		return take_record(options, value);
+	if (option == 'o')
+		options->directory = value;
+	options->listing = options->listing || option == OPTION_LISTING;
+	options->unproven = options->unproven || option == OPTION_UNPROVEN;
+	return true;
 }
+
+static const struct option_table table = {"build", help, "hVo:", long_options, take_option};
 
 int command_build(int argument_count, char **arguments)
 {
 	struct build_options options = {.files = SCANLATCH_FILE_BIN | SCANLATCH_FILE_HEX, .record = 16};
-	int option;
-	while ((option = getopt_long(argument_count, arguments, "hVo:", long_options, NULL)) != -1) {
-		if (option == 'h') {
-			fputs(help, stdout);
-			return EXIT_GOOD;
-		}
-		if (option == 'V')
-			return print_version();
-		if (option == '?')
-			return option_error("build ");
-		if (!take_option(&options, option))
-			return EXIT_BAD;
-	}
+	const int parsed = parse_options(&table, argument_count, arguments, &options);
+	if (parsed != PARSED)
+		return parsed;
 	if (optind == argument_count)
 		return usage_error("build", "wanted at least one plan, found none");
 	if (options.directory == NULL || options.directory[0] == '\0')

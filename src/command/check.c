@@ -74,24 +74,14 @@ static int check_plans(char **paths, int count, const struct common_options *opt
 	return code;
 }
 
+static const struct option_table table = {"check", help, "hV", long_options, NULL};
+
 int command_check(int argument_count, char **arguments)
 {
 	struct common_options options = {0};
-	int option;
-	while ((option = getopt_long(argument_count, arguments, "hV", long_options, NULL)) != -1) {
-		if (option == 'h') {
-			fputs(help, stdout);
-			return EXIT_GOOD;
-		}
-		if (option == 'V')
-			return print_version();
-		if (option == '?')
-			return option_error("check ");
-		if (option == OPTION_STRICT)
-			options.strict = true;
-		else if (!take_common_option(&options, option, optarg, "check"))
-			return EXIT_BAD;
-	}
+	const int parsed = parse_options(&table, argument_count, arguments, &options);
+	if (parsed != PARSED)
+		return parsed;
 	if (optind == argument_count)
 		return usage_error("check", "wanted at least one plan, found none");
 	return check_plans(arguments + optind, argument_count - optind, &options);

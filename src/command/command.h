@@ -39,25 +39,35 @@ int command_check(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
 
-// Short options that every command has; long ones are COMMON_LONG_OPTIONS. Values above any character stand for long-only options.
+// Long options without a short one: values above any character.
 enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING };
 
+// The options that every command has, for its table.
 #define COMMON_LONG_OPTIONS                                                                                                \
 	{"help", no_argument, NULL, 'h'}, {"version", no_argument, NULL, 'V'}, {"color", required_argument, NULL, OPTION_COLOUR}, \
 		{"json", no_argument, NULL, OPTION_JSON}
 
-// Handles an option that commands share. False after saying why it is wrong (a bad value).
-bool take_common_option(struct common_options *options, int option, const char *value, const char *command);
+struct option;
 
-// Prints the version to standard output and gives the exit code.
-int print_version(void);
+// What a command's options are.
+struct option_table {
+	const char *command;
+	const char *help;                  // the whole text of --help
+	const char *short_options;         // "hV" and the command's own
+	const struct option *long_options; // COMMON_LONG_OPTIONS, the command's own, and zeros
+	// Takes an option of the command's own. False after saying why its value is wrong. NULL if there are none.
+	bool (*take)(void *options, int option, const char *value);
+};
+
+#define PARSED (-1)
+
+// Parses the options; `options` begins with a struct common_options. PARSED: go on with the arguments from optind on; otherwise the
+// exit code with which the command ends (help or version were printed, or an error).
+int parse_options(const struct option_table *table, int argument_count, char **arguments, void *options);
 
 // "scanlatch COMMAND: …" and where to find help, on standard error. Returns EXIT_BAD.
 __attribute__((format(printf, 2, 3)))
 int usage_error(const char *command, const char *format, ...);
-
-// What getopt_long's '?' and ':' mean is printed by getopt itself; this adds where to find help. Returns EXIT_BAD.
-int option_error(const char *command);
 
 bool colour_on(enum colour_choice choice, int descriptor);
 

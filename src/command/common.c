@@ -1,3 +1,4 @@
+#include <getopt.h>
 #include <stdarg.h>
 #include <stdio.h>
 #include <stdlib.h>
@@ -6,12 +7,8 @@
 
 #include "command/command.h"
 
-bool take_common_option(struct common_options *options, int option, const char *value, const char *command)
+static bool take_colour(struct common_options *options, const char *value, const char *command)
 {
-	if (option == OPTION_JSON) {
-		options->json = true;
-		return true;
-	}
 	static const char *const words[] = {[COLOUR_AUTO] = "auto", [COLOUR_ALWAYS] = "always", [COLOUR_NEVER] = "never"};
 	for (size_t index = 0; index < sizeof words / sizeof *words; index++)
 		if (strcmp(value, words[index]) == 0) {
@@ -28,10 +25,33 @@ int print_version(void)
 	return EXIT_GOOD;
 }
 
-int option_error(const char *command)
+int parse_options(const struct option_table *table, int argument_count, char **arguments, void *options)
 {
-	fprintf(stderr, "scanlatch: try \"scanlatch %s--help\"\n", command);
-	return EXIT_BAD;
+	struct common_options *common = options;
+	int option;
+	while ((option = getopt_long(argument_count, arguments, table->short_options, table->long_options, NULL)) != -1) {
+		bool good = true;
+		if (option == 'h') {
+			fputs(table->help, stdout);
+			return EXIT_GOOD;
+		} else if (option == 'V') {
+			return print_version();
+		} else if (option == '?') { // getopt_long has said what is wrong
+			fprintf(stderr, "scanlatch: try \"scanlatch %s --help\"\n", table->command);
+			return EXIT_BAD;
+		} else if (option == OPTION_COLOUR) {
+			good = take_colour(common, optarg, table->command);
+		} else if (option == OPTION_JSON) {
+			common->json = true;
+		} else if (option == OPTION_STRICT) {
+			common->strict = true;
+		} else {
+			good = table->take(options, option, optarg);
+		}
+		if (!good)
+			return EXIT_BAD;
+	}
+	return PARSED;
 }
 
 int usage_error(const char *command, const char *format, ...)

@@ -18,22 +18,14 @@ static const char help[] =
 
 static const struct option long_options[] = {COMMON_LONG_OPTIONS, {NULL, 0, NULL, 0}};
 
+static const struct option_table table = {"list", help, "hV", long_options, NULL};
+
 int command_list(int argument_count, char **arguments)
 {
 	struct common_options options = {0};
-	int option;
-	while ((option = getopt_long(argument_count, arguments, "hV", long_options, NULL)) != -1) {
-		if (option == 'h') {
-			fputs(help, stdout);
-			return EXIT_GOOD;
-		}
-		if (option == 'V')
-			return print_version();
-		if (option == '?')
-			return option_error("list ");
-		if (!take_common_option(&options, option, optarg, "list"))
-			return EXIT_BAD;
-	}
+	const int parsed = parse_options(&table, argument_count, arguments, &options);
+	if (parsed != PARSED)
+		return parsed;
 	if (argument_count - optind != 1)
 		return usage_error("list", "wanted one catalogue (parts), found %d", argument_count - optind);
 	const char *what = arguments[optind];

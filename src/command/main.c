@@ -37,6 +37,12 @@ static void print_help(FILE *out)
 	      out);
 }
 
+static int suggest_help(void)
+{
+	fputs("scanlatch: try \"scanlatch --help\"\n", stderr);
+	return EXIT_BAD;
+}
+
 static int unknown_command(const char *name)
 {
 	for (size_t index = 0; index < sizeof later_commands / sizeof *later_commands; index++)
@@ -48,7 +54,7 @@ static int unknown_command(const char *name)
 	for (size_t index = 0; index < command_count; index++)
 		fprintf(stderr, "%s %s", index == 0 ? "" : ",", commands[index].name);
 	fputs("\n", stderr);
-	return option_error("");
+	return suggest_help();
 }
 
 static int run(int argument_count, char **arguments)
@@ -66,7 +72,7 @@ static int run(int argument_count, char **arguments)
 		return print_version();
 	if (name[0] == '-') {
 		fprintf(stderr, "scanlatch: unknown option \"%s\" before a command\n", name);
-		return option_error("");
+		return suggest_help();
 	}
 	for (size_t index = 0; index < command_count; index++)
 		if (strcmp(name, commands[index].name) == 0)

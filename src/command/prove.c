@@ -97,24 +97,14 @@ static int check_arguments(char **arguments, int count)
 	return EXIT_GOOD;
 }
 
+static const struct option_table table = {"prove", help, "hV", long_options, NULL};
+
 int command_prove(int argument_count, char **arguments)
 {
 	struct common_options options = {0};
-	int option;
-	while ((option = getopt_long(argument_count, arguments, "hV", long_options, NULL)) != -1) {
-		if (option == 'h') {
-			fputs(help, stdout);
-			return EXIT_GOOD;
-		}
-		if (option == 'V')
-			return print_version();
-		if (option == '?')
-			return option_error("prove ");
-		if (option == OPTION_STRICT)
-			options.strict = true;
-		else if (!take_common_option(&options, option, optarg, "prove"))
-			return EXIT_BAD;
-	}
+	const int parsed = parse_options(&table, argument_count, arguments, &options);
+	if (parsed != PARSED)
+		return parsed;
 	int code = check_arguments(arguments + optind, argument_count - optind);
 	if (code != EXIT_GOOD)
 		return code;
