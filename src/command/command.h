@@ -65,6 +65,9 @@ struct option_table {
 // exit code with which the command ends (help or version were printed, or an error).
 int parse_options(const struct option_table *table, int argument_count, char **arguments, void *options);
 
+// Prints the version to standard output. Returns EXIT_GOOD.
+int print_version(void);
+
 // "scanlatch COMMAND: …" and where to find help, on standard error. Returns EXIT_BAD.
 __attribute__((format(printf, 2, 3)))
 int usage_error(const char *command, const char *format, ...);

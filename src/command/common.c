@@ -28,7 +28,10 @@ int print_version(void)
 int parse_options(const struct option_table *table, int argument_count, char **arguments, void *options)
 {
 	struct common_options *common = options;
+	char name[32]; // getopt_long begins its messages with it
 	int option;
+	snprintf(name, sizeof name, "scanlatch %s", table->command);
+	arguments[0] = name;
 	while ((option = getopt_long(argument_count, arguments, table->short_options, table->long_options, NULL)) != -1) {
 		bool good = true;
 		if (option == 'h') {
