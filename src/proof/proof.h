@@ -36,7 +36,8 @@ struct byte_place {
 	uint32_t value;        // the byte or word that is there
 };
 
-// A counterexample: everything that a person at a bench needs.
+// A counterexample: everything that a person at a bench needs. Without a cell or state to show (`present` false) a failed proof may
+// still have words and a bank: why it could not be judged, or what is missing.
 struct counterexample {
 	bool present;
 	uint32_t bank;
@@ -158,6 +159,10 @@ struct proofs {
 // Proves images (one for each chip of the plan, of its capacity) against a timeline. `start_state` is the plan's start where it has one (or
 // 0 for a counter); otherwise pass has_start false and the prover finds the frame itself: see frame_find. NULL when memory is out.
 struct proofs *proofs_run(const struct timeline *timeline, const struct image *images, bool has_start, uint32_t start_state);
+// What can be said of a plan without images: colour and speed, as its timeline has them; all other proofs are absent. NULL when memory is
+// out. Freed with proofs_destroy.
+struct proofs *proofs_of_plan(const struct timeline *timeline);
+
 void proofs_destroy(struct proofs *proofs);
 
 // True if a must failed (or, with strict, any proof). Cannot fail.

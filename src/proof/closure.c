@@ -1,0 +1,143 @@
+// Closure: every line takes its cells and ticks, and the frame returns to its first cell after exactly its cells and ticks.
+#include <inttypes.h>
+
+#include "base/arena.h"
+#include "proof/trial.h"
+
+// `bytes`: the bytes that hold the next state, in words.
+static const char *back_too_early(const struct trial *trial, const char *bytes)
+{
+	const struct lap *lap = &trial->lap;
+	return arena_format(trial->proofs->arena, "the next state is 0x%" PRIX32 " (%s), the frame's first: it came back after %"
+	                    PRIu32 " cells, expected after %s%" PRIu32, lap->states[0], bytes, lap->return_cells,
+	                    trial->period < trial->timeline->cell_count ? "a multiple of " : "", trial->period);
+}
+
+static const char *back_elsewhere(const struct trial *trial, const char *bytes, uint32_t next, uint32_t used_at)
+{
+	const struct lap *lap = &trial->lap;
+	return arena_format(trial->proofs->arena, "the next state is 0x%" PRIX32 " (%s), which cell %" PRIu32
+	                    " of the frame had already: expected a way back to the first state 0x%" PRIX32, next, bytes,
+	                    used_at, lap->states[0]);
+}
+
+static const char *not_back(const struct trial *trial, const char *bytes)
+{
+	const struct lap *lap = &trial->lap;
+	return arena_format(trial->proofs->arena, "the next state after the frame's %" PRIu32 " cells is 0x%" PRIX32
+	                    " (%s), expected the first state 0x%" PRIX32, trial->timeline->cell_count, lap->state_after, bytes,
+	                    lap->states[0]);
+}
+
+static uint32_t state_after_cell(const struct lap *lap, uint32_t cell, uint32_t cells)
+{
+	return cell + 1 == cells ? lap->state_after : lap->states[cell + 1];
+}
+
+// The first cell whose next state the lap had before: *used_at is where. False if there is none; *memory_out tells why.
+static bool find_repeat(const struct trial *trial, uint32_t *cell, uint32_t *used_at, bool *memory_out)
+{
+	const struct lap *lap = &trial->lap;
+	const uint32_t cells = trial->timeline->cell_count;
+	uint32_t *used = arena_array(trial->arena, (size_t)1 << trial->wiring.state_bits, sizeof *used);
+	*memory_out = used == NULL;
+	for (uint32_t index = 0; used != NULL && index < cells; index++) {
+		used[lap->states[index]] = index + 1;
+		uint32_t next = state_after_cell(lap, index, cells);
+		if (used[next] == 0)
+			continue;
+		*cell = index;
+		*used_at = used[next] - 1;
+		return true;
+	}
+	return false;
+}
+
+// Why the states are no loop that fits the frame. The words are NULL when memory is out.
+static struct counterexample loop_fault(const struct trial *trial)
+{
+	const struct lap *lap = &trial->lap;
+	const uint32_t cells = trial->timeline->cell_count;
+	uint32_t cell = cells - 1, used_at = 0, wrong_bits = UINT32_MAX;
+	bool memory_out = false, repeats = false;
+	if (lap->return_cells != 0)
+		cell = lap->return_cells - 1;
+	else
+		repeats = find_repeat(trial, &cell, &used_at, &memory_out);
+	uint32_t next = state_after_cell(lap, cell, cells);
+	if (lap->return_cells == 0 && !repeats)
+		wrong_bits = next ^ lap->states[0];
+	struct counterexample found = blame_next(trial, cell, wrong_bits);
+	const char *bytes = memory_out ? NULL : next_bytes(trial, found.state);
+	if (bytes == NULL)
+		return found;
+	found.what = lap->return_cells != 0 ? back_too_early(trial, bytes)
+	             : repeats ? back_elsewhere(trial, bytes, next, used_at) : not_back(trial, bytes);
+	return found;
+}
+
+static bool planned_long(const struct trial *trial, uint32_t cell)
+{
+	int stretch = trial->timeline->plan->role_signal[ROLE_STRETCH];
+	return stretch >= 0 && (trial->timeline->asserted[cell] >> stretch & 1);
+}
+
+// The first cell of a line whose length is not as planned; the line's first if there is none.
+static uint32_t wrong_length_cell(const struct trial *trial, const struct frame_line *line)
+{
+	const struct clock *clock = &trial->timeline->plan->clock;
+	uint32_t cells = trial->timeline->types[line->type].cells;
+	for (uint32_t cell = line->first_cell; cell < line->first_cell + cells; cell++) {
+		int64_t planned = clock->cell_ticks + (planned_long(trial, cell) ? clock->stretch_ticks : 0);
+		if (lap_cell_ticks(trial, cell) != planned)
+			return cell;
+	}
+	return line->first_cell;
+}
+
+static struct counterexample line_fault(const struct trial *trial, uint32_t line_index)
+{
+	const struct plan *plan = trial->timeline->plan;
+	const struct frame_line *line = &trial->timeline->lines[line_index];
+	uint32_t cell = wrong_length_cell(trial, line);
+	int stretch = plan->role_signal[ROLE_STRETCH];
+	struct counterexample found = {.present = true, .bank = trial->bank, .signal = SIZE_MAX};
+	if (stretch >= 0)
+		found = blame_pin(trial, lap_stretch_cell(trial, cell), (size_t)stretch);
+	found.cell = cell;
+	found.what = arena_format(trial->proofs->arena, "the line takes %" PRId64 " ticks, expected %" PRId64
+	                          ": this cell takes %" PRId64, trial->lap.line_ticks[line_index],
+	                          trial->timeline->types[line->type].ticks, lap_cell_ticks(trial, cell));
+	return found;
+}
+
+static bool find_wrong_line(const struct trial *trial, uint32_t *wrong)
+{
+	for (uint32_t index = 0; index < trial->timeline->line_count; index++) {
+		if (trial->lap.line_ticks[index] != trial->timeline->types[trial->timeline->lines[index].type].ticks) {
+			*wrong = index;
+			return true;
+		}
+	}
+	return false;
+}
+
+bool prove_closure(struct trial *trial)
+{
+	struct closure_result *result = &trial->proofs->closure;
+	if (trial->bank == 0) {
+		*result = (struct closure_result){.lines = trial->timeline->line_count, .cells = trial->timeline->cell_count,
+		                                  .ticks = trial->lap.ticks, .period_cells = trial->lap.return_cells,
+		                                  .start_state = trial->lap.states[0]};
+	}
+	uint32_t line = 0;
+	bool wrong_line = find_wrong_line(trial, &line);
+	struct counterexample of_line = {.cell = UINT32_MAX}, of_loop = {.cell = UINT32_MAX};
+	if (wrong_line)
+		of_line = line_fault(trial, line);
+	if (!trial->lap.closed)
+		of_loop = loop_fault(trial);
+	if (!wrong_line && trial->lap.closed)
+		return true;
+	return proof_fails(trial, PROOF_CLOSURE, of_line.cell < of_loop.cell ? of_line : of_loop);
+}

@@ -1,0 +1,197 @@
+#include "proof/frame_find.h"
+
+#include "base/arena.h"
+
+// Held comparisons may take so many times the cells of frame and loop.
+#define BUDGET_LAPS 64u
+
+struct finder {
+	struct arena *arena;
+	const struct timeline *timeline;
+	const struct wiring *wiring;
+	const struct machine *machine;
+	const uint64_t *expected;
+	uint64_t compared;         // signals whose pins are known
+	uint32_t *states;          // [length]: the loop
+	uint64_t *pins;            // [length]
+	uint32_t length;
+	uint32_t *border;          // [cells]: of the expected pins
+	bool anchored;             // some cell is held
+	uint32_t anchor;           // the cell whose held value is rarest in the loop
+	uint64_t budget;
+	uint32_t best_turn, best_cells;
+};
+
+// Lists the loop that state 0 falls into.
+static bool list_loop(struct finder *finder)
+{
+	size_t states = (size_t)1 << finder->wiring->state_bits;
+	uint32_t *seen = arena_array(finder->arena, states, sizeof *seen);
+	if (seen == NULL)
+		return false;
+	uint32_t state = machine_settle(finder->machine, 0), step = 0;
+	for (; seen[state] == 0; state = machine_next(finder->machine, state))
+		seen[state] = ++step;
+	finder->length = step - seen[state] + 1;
+	finder->states = arena_array(finder->arena, finder->length, sizeof *finder->states);
+	if (finder->states == NULL)
+		return false;
+	for (uint32_t index = 0; index < finder->length; index++) {
+		finder->states[index] = state;
+		state = machine_next(finder->machine, state);
+	}
+	return true;
+}
+
+static bool read_pins(struct finder *finder, const struct decoders *decoders)
+{
+	finder->pins = arena_array(finder->arena, finder->length, sizeof *finder->pins);
+	if (finder->pins == NULL)
+		return false;
+	const uint64_t inverted = levels_of(finder->timeline->plan, 0);
+	finder->compared = finder->wiring->data_signals;
+	for (size_t index = 0; index < decoders->count; index++)
+		finder->compared |= (uint64_t)decoders->list[index].known << decoders->list[index].signal;
+	for (uint32_t index = 0; index < finder->length; index++) {
+		uint64_t levels = machine_row(finder->machine, finder->states[index]).levels;
+		uint32_t shown_at = index;
+		if (finder->wiring->outputs == OUTPUTS_REGISTERED)
+			shown_at = index + 1 == finder->length ? 0 : index + 1;
+		finder->pins[shown_at] |= (levels ^ inverted) & finder->wiring->data_signals;
+		finder->pins[index] |= decoders_pins(decoders, finder->states[index]);
+	}
+	return true;
+}
+
+static bool same_pins(const struct finder *finder, uint64_t left, uint64_t right)
+{
+	return ((left ^ right) & finder->compared) == 0;
+}
+
+// border[i]: how many cells at the start of the frame agree with as many that end at cell i, less than all: the failure function
+// of Knuth, Morris and Pratt (1977).
+static bool find_borders(struct finder *finder)
+{
+	const uint32_t cells = finder->timeline->cell_count;
+	finder->border = arena_array(finder->arena, cells, sizeof *finder->border);
+	if (finder->border == NULL)
+		return false;
+	uint32_t length = 0;
+	for (uint32_t cell = 1; cell < cells; cell++) {
+		while (length > 0 && !same_pins(finder, finder->expected[cell], finder->expected[length]))
+			length = finder->border[length - 1];
+		length += same_pins(finder, finder->expected[cell], finder->expected[length]);
+		finder->border[cell] = length;
+	}
+	return true;
+}
+
+static unsigned bit_count(uint32_t bits)
+{
+	unsigned count = 0;
+	for (; bits != 0; bits &= bits - 1)
+		count++;
+	return count;
+}
+
+// Of the cells that are held in the most bits, the one whose value the fewest states of the loop have.
+static bool choose_anchor(struct finder *finder)
+{
+	const struct timeline *timeline = finder->timeline;
+	if (timeline->hold_mask == NULL)
+		return true;
+	uint32_t mask = 0;
+	for (uint32_t cell = 0; cell < timeline->cell_count; cell++)
+		if (timeline->hold_mask[cell] != mask && bit_count(timeline->hold_mask[cell]) > bit_count(mask))
+			mask = timeline->hold_mask[cell];
+	uint32_t *uses = arena_array(finder->arena, (size_t)1 << finder->wiring->state_bits, sizeof *uses);
+	if (uses == NULL)
+		return false;
+	for (uint32_t index = 0; index < finder->length; index++)
+		uses[finder->states[index] & mask]++;
+	for (uint32_t cell = 0; mask != 0 && cell < timeline->cell_count; cell++) {
+		if (timeline->hold_mask[cell] != mask)
+			continue;
+		if (!finder->anchored || uses[timeline->hold_value[cell]] < uses[timeline->hold_value[finder->anchor]])
+			finder->anchor = cell;
+		finder->anchored = true;
+	}
+	return true;
+}
+
+static uint32_t turned_state(const struct finder *finder, uint32_t turn, uint32_t cell)
+{
+	return finder->states[((uint64_t)turn + cell) % finder->length];
+}
+
+static bool held_agrees(const struct finder *finder, uint32_t turn, uint32_t cell)
+{
+	const struct timeline *timeline = finder->timeline;
+	uint32_t wrong = turned_state(finder, turn, cell) ^ timeline->hold_value[cell];
+	return (wrong & timeline->hold_mask[cell]) == 0;
+}
+
+// How many cells from the first on agree in their held bits.
+static uint32_t held_cells(struct finder *finder, uint32_t turn)
+{
+	uint32_t cell = 0;
+	while (cell < finder->timeline->cell_count && held_agrees(finder, turn, cell))
+		cell++;
+	finder->budget -= cell < finder->budget ? cell : finder->budget;
+	return cell;
+}
+
+// A turn whose pins agree with the whole frame. True if it is the one.
+static bool try_turn(struct finder *finder, uint32_t turn)
+{
+	const uint32_t cells = finder->timeline->cell_count;
+	uint32_t agreeing = cells;
+	if (finder->anchored && !held_agrees(finder, turn, finder->anchor))
+		agreeing = 0;
+	else if (finder->anchored && finder->budget > 0)
+		agreeing = held_cells(finder, turn);
+	else if (finder->anchored)
+		agreeing = 0;
+	// Any turn whose pins agree is better than one whose pins do not.
+	if (finder->best_cells < cells || agreeing > finder->best_cells - cells) {
+		finder->best_turn = turn;
+		finder->best_cells = cells + agreeing;
+	}
+	return agreeing == cells;
+}
+
+static void match_turns(struct finder *finder)
+{
+	const uint32_t cells = finder->timeline->cell_count;
+	const uint64_t end = (uint64_t)finder->length + cells - 1;
+	uint32_t matched = 0, place = 0;
+	for (uint64_t index = 0; index < end; index++) {
+		uint64_t pins = finder->pins[place];
+		place = place + 1 == finder->length ? 0 : place + 1;
+		if (matched == cells)
+			matched = finder->border[cells - 1];
+		while (matched > 0 && !same_pins(finder, pins, finder->expected[matched]))
+			matched = finder->border[matched - 1];
+		matched += same_pins(finder, pins, finder->expected[matched]);
+		if (matched == cells) {
+			if (try_turn(finder, (uint32_t)((index + 1 - cells) % finder->length)))
+				return;
+		} else if (matched > finder->best_cells) {
+			finder->best_turn = (uint32_t)((index + 1 - matched) % finder->length);
+			finder->best_cells = matched;
+		}
+	}
+}
+
+bool frame_find(struct arena *arena, const struct timeline *timeline, const struct wiring *wiring,
+                const struct machine *machine, const uint64_t *expected, const struct decoders *decoders, uint32_t *start)
+{
+	struct finder finder = {.arena = arena, .timeline = timeline, .wiring = wiring, .machine = machine,
+	                        .expected = expected};
+	if (!list_loop(&finder) || !read_pins(&finder, decoders) || !find_borders(&finder) || !choose_anchor(&finder))
+		return false;
+	finder.budget = BUDGET_LAPS * ((uint64_t)timeline->cell_count + finder.length);
+	match_turns(&finder);
+	*start = finder.states[finder.best_turn];
+	return true;
+}

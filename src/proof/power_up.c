@@ -1,0 +1,55 @@
+// Power-up: whatever the latches hold when the supply comes up, the machine reaches the frame.
+#include <inttypes.h>
+
+#include "base/arena.h"
+#include "proof/trial.h"
+#include "proof/ways.h"
+
+static const char not_closed[] = "not judged: the frame does not close";
+
+static void note_longest(struct trial *trial, struct power_up_result *result)
+{
+	const struct timeline *timeline = trial->timeline;
+	if (trial->bank > 0 && trial->ways->longest_cells <= result->longest_cells)
+		return;
+	result->longest_cells = trial->ways->longest_cells;
+	result->longest_state = trial->ways->longest_state;
+	result->longest_bank = trial->bank;
+	// A frame has more cells than lines, so that both products keep below 2^48.
+	fraction_make((int64_t)result->longest_cells * timeline->line_count, timeline->cell_count, &result->longest_lines);
+}
+
+static bool loop_fails(struct trial *trial)
+{
+	const struct ways *ways = trial->ways;
+	struct counterexample found = {.present = true, .bank = trial->bank, .state = ways->second_loop_state,
+	                               .signal = SIZE_MAX};
+	found.what = arena_format(trial->proofs->arena, "state 0x%" PRIX32 " is on a second loop of %" PRIu32
+	                          " cells and never reaches the frame; %" PRIu64 " states are lost to second loops",
+	                          ways->second_loop_state, ways->second_loop_cells, ways->lost_states);
+	return proof_fails(trial, PROOF_POWER_UP, found);
+}
+
+bool prove_power_up(struct trial *trial)
+{
+	struct power_up_result *result = &trial->proofs->power_up;
+	if (!trial->lap.closed) {
+		proof_not_judged(trial, PROOF_POWER_UP, not_closed);
+		return true;
+	}
+	trial->ways = ways_find(trial->arena, trial->machine, &trial->wiring, trial->lap.states, trial->lap.return_cells);
+	if (trial->ways == NULL)
+		return false;
+	result->states += (uint64_t)1 << trial->wiring.state_bits;
+	if (trial->lap.return_cells > result->frame_states)
+		result->frame_states = trial->lap.return_cells;
+	note_longest(trial, result);
+	if (trial->ways->lost_states == 0)
+		return true;
+	if (result->lost_states == 0) {
+		result->second_loop_state = trial->ways->second_loop_state;
+		result->second_loop_cells = trial->ways->second_loop_cells;
+	}
+	result->lost_states += trial->ways->lost_states;
+	return loop_fails(trial);
+}

@@ -1,0 +1,143 @@
+#include "proof/proof.h"
+
+#include "base/arena.h"
+#include "proof/frame_find.h"
+#include "proof/trial.h"
+
+struct proof_row {
+	const char *name;
+	bool must;
+	bool (*prove)(struct trial *trial);
+};
+
+// In the order of design page 1.7; upset comes after power-up, whose ways it reads.
+static const struct proof_row proof_rows[PROOF_COUNT] = {
+	[PROOF_CLOSURE] = {"closure", true, prove_closure},
+	[PROOF_SIGNALS] = {"signals", true, prove_signals},
+	[PROOF_COLOUR] = {"colour", true, prove_colour},
+	[PROOF_POWER_UP] = {"power-up", true, prove_power_up},
+	[PROOF_UPSET] = {"upset", false, prove_upset},
+	[PROOF_GLITCHES] = {"glitches", false, prove_glitches},
+	[PROOF_SPEED] = {"speed", false, prove_speed},
+	[PROOF_SWEEP] = {"sweep", true, prove_sweep},
+};
+
+const char *proof_name(enum proof_kind kind)
+{
+	return proof_rows[kind].name;
+}
+
+bool proof_is_must(enum proof_kind kind)
+{
+	return proof_rows[kind].must;
+}
+
+bool proofs_failed(const struct proofs *proofs, bool strict)
+{
+	for (unsigned kind = 0; kind < PROOF_COUNT; kind++)
+		if (proofs->proof[kind].verdict == VERDICT_FAIL && (strict || proof_rows[kind].must))
+			return true;
+	return false;
+}
+
+static void zero_figures(struct proofs *proofs)
+{
+	const struct fraction zero = FRACTION_ZERO;
+	proofs->colour.cycles_per_line = proofs->colour.cycles_per_frame = zero;
+	proofs->power_up.longest_lines = zero;
+	proofs->upset.mean_cells = proofs->upset.worst_slip_lines = proofs->upset.mean_slip_cells = zero;
+	proofs->glitches.unsettled_s = zero;
+	proofs->speed = (struct speed_result){zero, zero, zero, zero, zero, zero, false, zero, zero, 0};
+	for (unsigned kind = 0; kind < PROOF_COUNT; kind++)
+		proofs->proof[kind].counterexample.signal = SIZE_MAX;
+}
+
+struct proofs *proofs_alloc(const struct timeline *timeline)
+{
+	const struct plan *plan = timeline->plan;
+	const struct fraction zero = FRACTION_ZERO;
+	struct arena *arena = arena_create();
+	struct proofs *proofs = arena == NULL ? NULL : arena_alloc(arena, sizeof *proofs);
+	if (proofs == NULL) {
+		arena_destroy(arena);
+		return NULL;
+	}
+	proofs->arena = arena;
+	proofs->timeline = timeline;
+	proofs->banks = (uint32_t)1 << plan->bank_bits;
+	proofs->sweeps = arena_array(arena, plan->sweep_count, sizeof *proofs->sweeps);
+	proofs->codes = arena_array(arena, plan->signal_count, sizeof *proofs->codes);
+	proofs->code_counts = arena_array(arena, plan->signal_count, sizeof *proofs->code_counts);
+	if (proofs->sweeps == NULL || proofs->codes == NULL || proofs->code_counts == NULL) {
+		arena_destroy(arena);
+		return NULL;
+	}
+	zero_figures(proofs);
+	for (size_t index = 0; index < plan->sweep_count; index++)
+		proofs->sweeps[index] = (struct sweep_result){.worst_gap_s = zero, .within_s = plan->sweeps[index].within_s};
+	return proofs;
+}
+
+static bool trial_prove(struct trial *trial, bool has_start, uint32_t start)
+{
+	trial->machine = machine_create(trial->arena, &trial->wiring, trial->images, trial->bank);
+	if (trial->machine == NULL)
+		return false;
+	if (!has_start && !frame_find(trial->arena, trial->timeline, &trial->wiring, trial->machine, trial->expected,
+	                              trial->decoders, &start))
+		return false;
+	if (!lap_run(trial, start) || !lap_finish(trial))
+		return false;
+	for (unsigned kind = 0; kind < PROOF_COUNT; kind++)
+		if (!proof_rows[kind].prove(trial))
+			return false;
+	return true;
+}
+
+// One bank after the other, each in memory of its own.
+static bool prove_banks(struct trial *trial, bool has_start, uint32_t start_state)
+{
+	bool proved = true;
+	for (trial->bank = 0; proved && trial->bank < trial->proofs->banks; trial->bank++) {
+		trial->lap = (struct lap){0};
+		trial->ways = NULL;
+		trial->arena = arena_create();
+		proved = trial->arena != NULL && trial_prove(trial, has_start, start_state);
+		arena_destroy(trial->arena);
+	}
+	return proved;
+}
+
+static void show_codes(const struct trial *trial)
+{
+	for (size_t index = 0; index < trial->decoders->count; index++) {
+		const struct decoder *decoder = &trial->decoders->list[index];
+		trial->proofs->codes[decoder->signal] = decoder->codes;
+		trial->proofs->code_counts[decoder->signal] = decoder->code_count;
+	}
+}
+
+struct proofs *proofs_run(const struct timeline *timeline, const struct image *images, bool has_start, uint32_t start_state)
+{
+	struct proofs *proofs = proofs_alloc(timeline);
+	if (proofs == NULL)
+		return NULL;
+	struct trial trial = {.proofs = proofs, .timeline = timeline, .images = images};
+	trial.wiring = wiring_of(timeline->plan);
+	trial.expected = timeline_pins(timeline, proofs->arena);
+	trial.period = timeline_period(timeline);
+	trial.decoders = decoders_create(proofs->arena, timeline->plan);
+	bool ready = trial.expected != NULL && trial.period != 0 && trial.decoders != NULL;
+	if (!ready || !prove_banks(&trial, has_start, start_state)) {
+		proofs_destroy(proofs);
+		return NULL;
+	}
+	show_codes(&trial);
+	return proofs;
+}
+
+void proofs_destroy(struct proofs *proofs)
+{
+	if (proofs != NULL)
+		arena_destroy(proofs->arena);
+}

@@ -1,0 +1,89 @@
+// A trial: the machine with one setting of its bank jumpers, its simulated lap, and what the proofs find there.
+// Internal to proof/.
+#ifndef SCANLATCH_PROOF_TRIAL_H
+#define SCANLATCH_PROOF_TRIAL_H
+
+#include "machine/machine.h"
+#include "proof/decoder.h"
+#include "proof/proof.h"
+
+struct ways;
+
+// As many cells as the frame has, from the first cell on, as the machine takes them.
+struct lap {
+	uint32_t *states;         // [cell_count]
+	uint64_t *pins;           // [cell_count]: bit s: signal s is asserted at its pin
+	uint32_t state_after;     // the state that follows the last cell
+	uint32_t return_cells;    // after so many cells the first state came back for the first time; 0: never in the lap
+	bool closed;              // the states are a loop that fits the frame
+	int64_t *line_ticks;      // [line_count]
+	int64_t ticks;            // of the whole lap
+	int64_t shortest_ticks;   // of a cell
+};
+
+// Sums over the upsets of all trials so far that regained the frame. They stay below 2^24 states × 24 bits × 2^24 cells ×
+// 2^8 banks < 2^61.
+struct upset_sums {
+	uint64_t regained;
+	uint64_t cells;
+	uint64_t slip_cells;
+};
+
+struct trial {
+	struct proofs *proofs;
+	const struct timeline *timeline;
+	const uint64_t *expected;     // [cell_count]: the pins as planned
+	uint32_t period;              // the timeline's shortest
+	struct decoders *decoders;
+	struct arena *arena;          // of this trial; words of counterexamples go to the proofs' arena
+	const struct image *images;
+	struct wiring wiring;
+	const struct machine *machine;
+	uint32_t bank;
+	struct lap lap;
+	struct ways *ways;            // found by power-up for upset; NULL if the lap is not closed
+	struct upset_sums upset_sums;
+};
+
+// Proofs without results yet: every figure zero, every verdict pass. NULL when memory is out.
+struct proofs *proofs_alloc(const struct timeline *timeline);
+
+// Runs the lap from a state: states, then (once the decoders are known, with lap_finish) pins and ticks.
+// False when memory is out.
+bool lap_run(struct trial *trial, uint32_t start);
+bool lap_finish(struct trial *trial);
+
+// The ticks that a cell takes: long if the pin of the stretch signal was asserted `lead` cells before. Cannot fail.
+int64_t lap_cell_ticks(const struct trial *trial, uint32_t cell);
+// The cell whose pin decides the length of a cell. Only for plans with a stretch signal. Cannot fail.
+uint32_t lap_stretch_cell(const struct trial *trial, uint32_t cell);
+
+// The proofs, one file each. They add to the results of the trials before. False when memory is out.
+bool prove_closure(struct trial *trial);
+bool prove_signals(struct trial *trial);
+bool prove_colour(struct trial *trial);
+bool prove_power_up(struct trial *trial);
+bool prove_upset(struct trial *trial);
+bool prove_glitches(struct trial *trial);
+bool prove_speed(struct trial *trial);
+bool prove_sweep(struct trial *trial);
+
+// A proof fails: its verdict, and the counterexample if it is the first. `found` must have its words; NULL words mean that
+// memory is out, and give false.
+bool proof_fails(struct trial *trial, enum proof_kind kind, struct counterexample found);
+// A proof that cannot be judged, for a reason in words, fails. Cannot fail.
+void proof_not_judged(struct trial *trial, enum proof_kind kind, const char *reason);
+
+// A counterexample at a cell, without words yet: the pin of a signal there, or a bit of the state in which the cell's successor
+// finds itself. They name the state whose row was read and the byte that stands there. Cannot fail.
+struct counterexample blame_pin(const struct trial *trial, uint32_t cell, size_t signal);
+struct counterexample blame_next(const struct trial *trial, uint32_t cell, uint32_t wrong_bits);
+// The bytes of all chips that carry the next state (or clear) of a state, in words: "U7 0x01A3: 0x5B and U8 0x01A3: 0x00".
+// In the proofs' arena; NULL when memory is out.
+const char *next_bytes(const struct trial *trial, uint32_t state);
+// The chip with the longest access time; of equals, the first. Cannot fail.
+size_t slowest_chip(const struct wiring *wiring);
+// The cell before, around the frame. Cannot fail.
+uint32_t cell_before(const struct trial *trial, uint32_t cell);
+
+#endif

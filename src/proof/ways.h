@@ -1,0 +1,68 @@
+// The way home from every state: after how many cells, and where, it enters the frame. Internal to proof/.
+#ifndef SCANLATCH_PROOF_WAYS_H
+#define SCANLATCH_PROOF_WAYS_H
+
+#include <stdbool.h>
+#include <stdint.h>
+
+struct arena;
+struct machine;
+struct wiring;
+
+// What the upper bits of a record's `way` say; the lower ones hold a count of cells or a place.
+#define WAY_KIND 0xE0000000u
+#define WAY_UNKNOWN 0u             // subject: the next state
+#define WAY_PASSING 0x20000000u    // a counter's passing state: falls to 0 at once and shares its way
+#define WAY_SEGMENT 0x40000000u    // subject: the segment; count: place in it
+#define WAY_LOST 0x60000000u
+#define WAY_HOME 0x80000000u       // subject: where it enters the frame; count: cells until then
+
+// The first word is what machine_all_next fills in.
+struct way_record {
+	uint32_t subject;
+	uint32_t way;
+};
+
+// Where the first state of a segment of a long chain leads.
+struct way_segment {
+	bool lost;
+	uint32_t entry;
+	uint32_t cells;
+};
+
+struct ways {
+	struct way_record *records;     // [2^state_bits]
+	struct way_segment *segments;
+	uint32_t longest_cells;         // the longest way, and the lowest state that has it
+	uint32_t longest_state;
+	uint64_t lost_states;           // states that never reach the frame
+	uint32_t second_loop_state;     // the first other loop that came up, if any state is lost
+	uint32_t second_loop_cells;
+};
+
+struct way {
+	bool lost;         // never reaches the frame; then the rest says nothing
+	uint32_t cells;    // 0 for a state of the frame
+	uint32_t entry;    // position in frame_states where it enters
+};
+
+// Follows every state of the machine until it meets the frame, whose states are frame_states[frame_count], a loop in order,
+// all different. 8 bytes a state and some 100 KiB in the arena; time linear in the states: each is read once from where its
+// predecessor led. NULL when memory is out.
+struct ways *ways_find(struct arena *arena, const struct machine *machine, const struct wiring *wiring,
+                       const uint32_t *frame_states, uint32_t frame_count);
+
+// The way of a state. Cannot fail.
+static inline struct way ways_of(const struct ways *ways, uint32_t state)
+{
+	struct way_record record = ways->records[state];
+	uint32_t kind = record.way & WAY_KIND, count = record.way & ~WAY_KIND;
+	if (kind == WAY_HOME)
+		return (struct way){.cells = count, .entry = record.subject};
+	if (kind != WAY_SEGMENT || ways->segments[record.subject].lost)
+		return (struct way){.lost = true};
+	const struct way_segment *segment = &ways->segments[record.subject];
+	return (struct way){.cells = segment->cells - count, .entry = segment->entry};
+}
+
+#endif
