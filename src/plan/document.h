@@ -15,10 +15,10 @@ struct node_pair {
 	const struct node *value;
 };
 
-// A node. An alias is the node of its anchor, shared. All memory is the arena's.
+// A node. An alias is the node of its anchor, shared; as key, a copy with a place of its own. All memory is the arena's.
 struct node {
 	enum node_kind kind;
-	struct place place;          // of the node's first character
+	struct place place;          // of the node's first character, after an anchor
 	const char *text;            // NODE_SCALAR: the value, NUL-terminated (no NUL inside); quoted and plain alike
 	size_t length;               // NODE_SCALAR: bytes of text; an absent value is a scalar of length 0
 	const struct node **items;   // NODE_LIST
