@@ -136,6 +136,23 @@ static void read_stretch(struct reader *reader, const struct node *node, struct 
 	}
 }
 
+#define REST_SHOWN 20
+
+static void report_expression(struct reader *reader, const struct node *node, enum expression_status status, size_t offset)
+{
+	const char *rest = node->text + offset;
+	const char *words = expression_status_words(status);
+	if (status == EXPRESSION_MEMORY)
+		diagnose(reader->diagnostics, RULE_OUT_OF_MEMORY, node->place, "memory is out");
+	else if (*rest == '\0')
+		diagnose(reader->diagnostics, RULE_BAD_EXPRESSION, node->place, "expression \"%s\", at its end: %s", node->text, words);
+	else if (offset == 0)
+		diagnose(reader->diagnostics, RULE_BAD_EXPRESSION, node->place, "expression \"%s\": %s", node->text, words);
+	else
+		diagnose(reader->diagnostics, RULE_BAD_EXPRESSION, node->place, "expression \"%s\", at \"%.*s%s\": %s", node->text, REST_SHOWN,
+		         rest, strlen(rest) > REST_SHOWN ? "..." : "", words);
+}
+
 static bool read_hold(struct reader *reader, const struct node *field, const struct node *value, struct hold *hold)
 {
 	const struct plan *plan = reader->plan;
@@ -144,13 +161,8 @@ static bool read_hold(struct reader *reader, const struct node *field, const str
 		return false;
 	hold->place = value->place;
 	const enum expression_status status = expression_compile(reader->arena, hold->text, &hold->expression, &offset);
-	if (status != EXPRESSION_OK) {
-		diagnose(reader->diagnostics, status == EXPRESSION_MEMORY ? RULE_OUT_OF_MEMORY : RULE_BAD_EXPRESSION, value->place,
-		         "expression \"%s\": %s at \"%s\"", hold->text, expression_status_words(status),
-		         hold->text[offset] == '\0' ? "its end" : hold->text + offset);
-		if (status == EXPRESSION_UNKNOWN_VARIABLE)
-			diagnose_hint(reader->diagnostics, "the variables are line, cell, col and row");
-	}
+	if (status != EXPRESSION_OK)
+		report_expression(reader, value, status, offset);
 	if (!reader->machine_known)
 		return false;
 	hold->field = find_field(plan, field->text);
@@ -251,7 +263,8 @@ static struct region *changed_region(struct reader *reader, const struct node *n
 		if (found != NULL) {
 			diagnose(reader->diagnostics, RULE_AMBIGUOUS_REGION, name->place, "region \"%s\" exists more than once in line type \"%s\"",
 			         name->text, line->name);
-			diagnose_also(reader->diagnostics, region->place, "region \"%s\"", name->text);
+			diagnose_also(reader->diagnostics, found->place, "the first");
+			diagnose_also(reader->diagnostics, region->place, "the second");
 			diagnose_hint(reader->diagnostics, "give the regions different names, or write the line type out");
 			return NULL;
 		}
@@ -294,7 +307,7 @@ static bool copy_regions(struct reader *reader, const struct line_type *from, st
 	line->region_count = from->region_count;
 	line->has_cells = from->has_cells;
 	line->cells = from->cells;
-	line->cells_place = from->cells_place;
+	line->cells_place = line->place; // what does not fit is this type, not the one that it derives from
 	return true;
 }
 
@@ -333,10 +346,12 @@ static void read_line_chain(struct reader *reader, struct pending_line *pending,
 		index = pending[index].like;
 	}
 	if (index != SIZE_MAX && pending[index].progress == OPEN) {
-		const struct node *like = pending[chain[length - 1]].values[LINE_LIKE];
-		diagnose(reader->diagnostics, RULE_LIKE_LOOP, like->place, "line type \"%s\" derives from itself through \"like: %s\"",
-		         reader->plan->lines[index].name, like->text);
-		pending[chain[length - 1]].good = false;
+		const size_t last = chain[length - 1];
+		const struct line_type *lines = reader->plan->lines;
+		diagnose(reader->diagnostics, RULE_LIKE_LOOP, pending[last].values[LINE_LIKE]->place,
+		         last == index ? "line type \"%s\" derives from itself" : "line type \"%s\" derives from itself, by way of \"%s\"",
+		         lines[index].name, lines[last].name);
+		pending[last].good = false;
 	}
 	while (length > 0)
 		read_line(reader, pending, chain[--length]);

@@ -127,7 +127,9 @@ static void read_origin(struct reader *reader, const struct node *node, struct s
 		read_field_origin(reader, node, signal);
 		return;
 	}
-	diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "from: wanted data or { field: NAME, codes: [...] }");
+	if (expect_kind(reader, node, NODE_SCALAR, "from (data, or a mapping with field and codes)"))
+		diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "from: wanted data or { field: NAME, codes: [...] }, found \"%s\"",
+		         node->text);
 }
 
 static void take_role(struct reader *reader, const struct node *node, size_t index, enum role role)

@@ -38,30 +38,36 @@ static const struct key sweep_keys[SWEEP_KEYS] = {
 	[SWEEP_WITHIN] = {"within", KEY_REQUIRED},
 };
 
-static void report_unknown_logic(struct reader *reader, const struct node *node, const char *what, enum logic_kind kind)
+static const char *const logic_words[] = {[LOGIC_LATCH] = "latch", [LOGIC_COUNTER] = "counter", [LOGIC_DECODER] = "decoder"};
+
+// `named` is a part of another kind that has the name, or NULL.
+static void report_unknown_logic(struct reader *reader, const struct node *node, const struct logic_part *named, enum logic_kind kind)
 {
 	const struct catalogue *catalogue = reader->catalogue;
+	const char *what = logic_words[kind];
 	const char *names[64];
 	size_t count = 0;
 	for (size_t index = 0; index < catalogue->logic_count && count < COUNT_OF(names); index++)
 		if (catalogue->logic[index].kind == kind)
 			names[count++] = catalogue->logic[index].name;
-	diagnose(reader->diagnostics, RULE_UNKNOWN_PART, node->place, "%s: there is no %s \"%s\" in the catalogue", what, what, node->text);
-	hint_words(reader, node->text, names, count);
+	if (named != NULL)
+		diagnose(reader->diagnostics, RULE_UNKNOWN_PART, node->place, "%s: \"%s\" is a %s", what, node->text, logic_words[named->kind]);
+	else
+		diagnose(reader->diagnostics, RULE_UNKNOWN_PART, node->place, "%s: there is no %s \"%s\" in the catalogue", what, what, node->text);
+	hint_words(reader, named != NULL ? "" : node->text, names, count);
 }
 
 // The part of the catalogue that `node` names, or the default.
-static const struct logic_part *read_logic(struct reader *reader, const struct node *node, const char *what, enum logic_kind kind,
-                                           const char *usual)
+static const struct logic_part *read_logic(struct reader *reader, const struct node *node, enum logic_kind kind, const char *usual)
 {
 	const struct logic_part *part = catalogue_logic(reader->catalogue, usual);
 	const char *name;
-	if (node == NULL || !read_scalar(reader, node, what, &name))
+	if (node == NULL || !read_scalar(reader, node, logic_words[kind], &name))
 		return part;
 	const struct logic_part *named = catalogue_logic(reader->catalogue, name);
 	if (named != NULL && named->kind == kind)
 		return named;
-	report_unknown_logic(reader, node, what, kind);
+	report_unknown_logic(reader, node, named, kind);
 	return part;
 }
 
@@ -69,10 +75,9 @@ static void read_logic_parts(struct reader *reader, const struct node *const *va
 {
 	struct timing *timing = &reader->plan->timing;
 	const bool async = reader->plan->machine.clear == CLEAR_ASYNC;
-	const struct logic_part *latch = read_logic(reader, values[TIMING_LATCH], "latch", LOGIC_LATCH, "74HC574");
-	const struct logic_part *counter =
-		read_logic(reader, values[TIMING_COUNTER], "counter", LOGIC_COUNTER, async ? "74HC161" : "74HC163");
-	const struct logic_part *decoder = read_logic(reader, values[TIMING_DECODER], "decoder", LOGIC_DECODER, "74HC138");
+	const struct logic_part *latch = read_logic(reader, values[TIMING_LATCH], LOGIC_LATCH, "74HC574");
+	const struct logic_part *counter = read_logic(reader, values[TIMING_COUNTER], LOGIC_COUNTER, async ? "74HC161" : "74HC163");
+	const struct logic_part *decoder = read_logic(reader, values[TIMING_DECODER], LOGIC_DECODER, "74HC138");
 	timing->latch_part = latch->name;
 	timing->latch_delay_s = latch->delay_s;
 	timing->latch_setup_s = latch->setup_s;

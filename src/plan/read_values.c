@@ -193,8 +193,7 @@ bool read_bits(struct reader *reader, const struct node *node, const char *text,
 		return false;
 	}
 	if (top >= bits) {
-		diagnose(reader->diagnostics, RULE_BAD_BITS, node->place, "%s: bit %u is beyond the %u bits (%u..0) that there are", what,
-		         top, bits, bits - 1);
+		diagnose(reader->diagnostics, RULE_BAD_BITS, node->place, "%s: there is no bit %u: the highest is %u", what, top, bits - 1);
 		return false;
 	}
 	*high = top;

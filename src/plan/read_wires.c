@@ -22,10 +22,11 @@ static void report_unknown_wire(struct reader *reader, const struct node *node, 
 	diagnose_hint(reader->diagnostics, "wires are %s, and - for an open pin", forms);
 }
 
-static void report_beyond(struct reader *reader, const struct node *node, const char *pin, unsigned index, unsigned bits)
+static void report_beyond(struct reader *reader, const struct node *node, const char *pin, unsigned index, const char *word,
+                          unsigned bits)
 {
-	diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place, "%s%u: \"%s\" is beyond the %u bits (0 to %u) that there are", pin,
-	         index, node->text, bits, bits - 1);
+	diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place, "%s%u: there is no \"%s\": the highest is %s.%u", pin, index,
+	         node->text, word, bits - 1);
 }
 
 static bool parse_address_wire(struct reader *reader, const struct node *node, unsigned pin, struct address_wire *wire)
@@ -48,10 +49,10 @@ static bool parse_address_wire(struct reader *reader, const struct node *node, u
 		diagnose(reader->diagnostics, RULE_NOT_YET, node->place, "A%u: \"%s\" belongs to line-frame machines, which this version does not carry out yet", pin, text);
 		return false;
 	} else if (parse_numbered(text, "state", &number)) {
-		report_beyond(reader, node, "A", pin, reader->plan->machine.state_bits);
+		report_beyond(reader, node, "A", pin, "state", reader->plan->machine.state_bits);
 		return false;
 	} else if (parse_numbered(text, "bank", &number)) {
-		report_beyond(reader, node, "A", pin, LIMIT_BANK_BITS);
+		report_beyond(reader, node, "A", pin, "bank", LIMIT_BANK_BITS);
 		return false;
 	} else {
 		report_unknown_wire(reader, node, "A", pin, "state.N, bank.N, low, high");
@@ -84,7 +85,7 @@ static bool parse_data_wire(struct reader *reader, const struct node *node, unsi
 		diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place, "D%u: signal \"%s\" comes from a field of the state and has no bit in the word", pin, text);
 		return false;
 	} else if (!counted && parse_numbered(text, "next", &number)) {
-		report_beyond(reader, node, "D", pin, plan->machine.state_bits);
+		report_beyond(reader, node, "D", pin, "next", plan->machine.state_bits);
 		return false;
 	} else {
 		report_unknown_wire(reader, node, "D", pin, counted ? "clear and the names of data signals" : "next.N and the names of data signals");
