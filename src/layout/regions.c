@@ -33,6 +33,16 @@ static bool walk_region(struct layout *layout, struct walk *walk, const struct r
 	return report_inexact(layout, region);
 }
 
+// A change may make a region a fill that stands before the other: the later place in the file is the fault.
+static void report_fills(struct layout *layout, const struct line_type *line, const struct region *left, const struct region *right)
+{
+	const bool changed = left->length_place.line > right->length_place.line;
+	const struct region *first = changed ? right : left, *second = changed ? left : right;
+	diagnose(layout->diagnostics, RULE_DOUBLED_FILL, second->length_place, "line type \"%s\" has a second fill, in region \"%s\"",
+	         line->name, second->name);
+	diagnose_also(layout->diagnostics, first->length_place, "the first, in region \"%s\"", first->name);
+}
+
 static size_t find_fill(struct layout *layout, const struct line_type *line, bool *good)
 {
 	size_t fill = SIZE_MAX;
@@ -40,9 +50,7 @@ static size_t find_fill(struct layout *layout, const struct line_type *line, boo
 		if (line->regions[index].length != LENGTH_FILL)
 			continue;
 		if (fill != SIZE_MAX) {
-			diagnose(layout->diagnostics, RULE_DOUBLED_FILL, line->regions[index].length_place,
-			         "line type \"%s\" has a second fill, in region \"%s\"", line->name, line->regions[index].name);
-			diagnose_also(layout->diagnostics, line->regions[fill].length_place, "the first, in region \"%s\"", line->regions[fill].name);
+			report_fills(layout, line, &line->regions[fill], &line->regions[index]);
 			*good = false;
 			return fill;
 		}

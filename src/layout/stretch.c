@@ -34,9 +34,9 @@ static bool report_unreachable(struct layout *layout, size_t type, const struct 
 	const int64_t below = laid->ticks / closing * closing;
 	const int64_t above = below + closing;
 	diagnose(layout->diagnostics, RULE_PHASE_UNREACHABLE, region->stretch_place,
-	         "line type \"%s\" has %" PRId64 " ticks, up to %" PRId64 " with %u stretched cells of %" PRId64
-	         " ticks more, and none of these lengths meets the phase",
-	         layout->plan->lines[type].name, laid->ticks, longest, available, clock->stretch_ticks);
+	         "line type \"%s\" has %" PRId64 " ticks, and up to %" PRId64 " with %u cell%s stretched by %" PRId64
+	         ": none of these lengths meets the phase",
+	         layout->plan->lines[type].name, laid->ticks, longest, available, available == 1 ? "" : "s", clock->stretch_ticks);
 	diagnose_also(layout->diagnostics, clock->phase_place, "the phase that is asked");
 	if (below > 0)
 		diagnose_hint(layout->diagnostics, "line lengths of %" PRId64 " or %" PRId64 " ticks would, as any multiple of %" PRId64 " does", below,
