@@ -83,5 +83,5 @@ bool scanlatch_images_read_folder(scanlatch_images *images, const char *folder, 
 			good = scanlatch_images_read_file(images, label, path, messages) && good;
 		}
 	}
-	return good && scanlatch_images_complete(images, messages);
+	return good && images_complete(images, folder, messages);
 }

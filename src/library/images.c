@@ -11,11 +11,12 @@ scanlatch_images *scanlatch_images_create(const scanlatch_plan *plan)
 	struct arena *arena = arena_create();
 	scanlatch_images *images = arena != NULL ? arena_alloc(arena, sizeof *images) : NULL;
 	struct image *chips = images != NULL ? arena_array(arena, plan->plan->chip_count, sizeof *chips) : NULL;
-	if (chips == NULL) {
+	const struct source **sources = chips != NULL ? arena_array(arena, plan->plan->chip_count, sizeof *sources) : NULL;
+	if (sources == NULL) {
 		arena_destroy(arena);
 		return NULL;
 	}
-	*images = (scanlatch_images){.arena = arena, .plan = plan, .images = chips};
+	*images = (scanlatch_images){.arena = arena, .plan = plan, .images = chips, .sources = sources};
 	return images;
 }
 
@@ -84,8 +85,8 @@ static bool decode_hex(const struct chip *chip, struct place place, const void *
 		diagnose(diagnostics, RULE_IMAGE_FORMAT, place, "Intel HEX: %s", hex_status_words(status));
 	else if (result.missing > 0)
 		diagnose(diagnostics, RULE_IMAGE_GAP, (struct place){place.source, 0, 0},
-		         "Intel HEX leaves %zu bytes of chip \"%s\" out, the first at 0x%X: they are taken as 0xFF (erased)", result.missing,
-		         chip->label, (unsigned)result.first_missing);
+		         "Intel HEX leaves %zu of the %zu bytes of chip \"%s\" out, the first at 0x%X; taken as 0xFF (erased)", result.missing,
+		         image->length, chip->label, (unsigned)result.first_missing);
 	return status == HEX_OK;
 }
 
@@ -108,6 +109,7 @@ static bool keep_image(scanlatch_images *images, size_t chip, const struct image
 	struct image *kept = &images->images[chip];
 	if (kept->bytes == NULL) {
 		*kept = *image;
+		images->sources[chip] = place.source;
 		return true;
 	}
 	if (memcmp(kept->bytes, image->bytes, kept->length) == 0)
@@ -117,6 +119,7 @@ static bool keep_image(scanlatch_images *images, size_t chip, const struct image
 		address++;
 	diagnose(diagnostics, RULE_IMAGE_DISAGREES, place, "byte 0x%02X at 0x%zX, where another file for chip \"%s\" has 0x%02X",
 	         image->bytes[address], address, images->plan->plan->chips[chip].label, kept->bytes[address]);
+	diagnose_also(diagnostics, (struct place){images->sources[chip], 0, 0}, "the other file");
 	return false;
 }
 
@@ -141,7 +144,7 @@ bool scanlatch_images_read(scanlatch_images *images, const char *label, const ch
 	return good && keep_image(images, index, &image, place, messages->diagnostics);
 }
 
-bool scanlatch_images_complete(const scanlatch_images *images, scanlatch_messages *messages)
+bool images_complete(const scanlatch_images *images, const char *folder, scanlatch_messages *messages)
 {
 	const struct plan *plan = images->plan->plan;
 	bool complete = true;
@@ -150,9 +153,17 @@ bool scanlatch_images_complete(const scanlatch_images *images, scanlatch_message
 			continue;
 		diagnose(messages->diagnostics, RULE_IMAGE_MISSING, (struct place){plan->source, 0, 0}, "there is no image for chip \"%s\" (%s)",
 		         plan->chips[chip].label, plan->chips[chip].part->name);
+		if (folder != NULL)
+			diagnose_hint(messages->diagnostics, "the folder %s has neither %s.%s.bin nor %s.%s.hex", folder, plan->name,
+			              plan->chips[chip].label, plan->name, plan->chips[chip].label);
 		complete = false;
 	}
 	return complete;
+}
+
+bool scanlatch_images_complete(const scanlatch_images *images, scanlatch_messages *messages)
+{
+	return images_complete(images, NULL, messages);
 }
 
 const uint8_t *scanlatch_images_bytes(const scanlatch_images *images, size_t chip, size_t *length)

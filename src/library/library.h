@@ -28,6 +28,7 @@ struct scanlatch_images {
 	const scanlatch_plan *plan;
 	struct table *table;       // NULL if the images were read
 	struct image *images;      // [chip_count]; bytes NULL where a chip was not read
+	const struct source **sources; // [chip_count]: the file that a chip was read from, NULL where there is none
 };
 
 struct scanlatch_proofs {
@@ -40,6 +41,9 @@ char *take_string(struct text *text);
 
 // Dumps a document in a stable form, ends it with a newline, and gives up the reference. NULL when memory is out.
 char *take_json(json_t *document);
+
+// True if every chip has its bytes; otherwise adds an error for each that has not. `folder`: where they were looked for, or NULL.
+bool images_complete(const scanlatch_images *images, const char *folder, scanlatch_messages *messages);
 
 // A source of a file's name alone, for messages about it; "-" is named standard input. NULL when memory is out.
 const struct source *source_of_name(scanlatch_messages *messages, const char *file);
