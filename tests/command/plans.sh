@@ -161,7 +161,7 @@ for_cases() {
 
 for_cases good check_good
 for_cases bad check_bad check_bad_name
-for rule in $(rules_of FILE FORM PLAN STATES WIRING); do
+for rule in $(rules_of FILE FORM PLAN STATES WIRING IMAGE); do
 	check_rule "$rule"
 done
 
