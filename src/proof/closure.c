@@ -2,7 +2,7 @@
 #include <inttypes.h>
 
 #include "base/arena.h"
-#include "proof/trial.h"
+#include "proof/jump.h"
 
 // `bytes`: the bytes that hold the next state, in words.
 static const char *back_too_early(const struct trial *trial, const char *bytes)
@@ -139,5 +139,8 @@ bool prove_closure(struct trial *trial)
 		of_loop = loop_fault(trial);
 	if (!wrong_line && trial->lap.closed)
 		return true;
-	return proof_fails(trial, PROOF_CLOSURE, of_line.cell < of_loop.cell ? of_line : of_loop);
+	struct counterexample found = of_line.cell < of_loop.cell ? of_line : of_loop;
+	if (!trial->lap.closed && !find_jump(trial, of_loop.cell, &found))
+		return false;
+	return proof_fails(trial, PROOF_CLOSURE, found);
 }

@@ -41,7 +41,7 @@ static void closed_frame(void **test)
 	by_hand_destroy(hand);
 }
 
-// Row 2 leads to 0: three cells and not five.
+// Row 2 leads to 0: three cells and not five. Row 3 is left without a predecessor, so row 2 should have led there.
 static void back_too_early(void **test)
 {
 	(void)test;
@@ -51,8 +51,53 @@ static void back_too_early(void **test)
 	const struct counterexample *found = failed(proofs);
 	assert_place(found, 2, 2, 0, 2, 0xF0);
 	assert_int_equal(found->signal, SIZE_MAX);
+	assert_string_equal(found->what, "the next state is 0x0, expected 0x3, which nothing else leads to");
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
+// Rows 2 and 3 both lead to 0: two faults, and no telling where row 2 should lead.
+static void back_too_early_for_two_reasons(void **test)
+{
+	(void)test;
+	struct by_hand *hand = small_burned();
+	burn(hand, 2, 0, small_pins[3]);
+	burn(hand, 3, 0, small_pins[4]);
+	struct proofs *proofs = prove(hand, 0);
+	const struct counterexample *found = failed(proofs);
+	assert_place(found, 2, 2, 0, 2, 0xF0);
 	assert_string_equal(found->what, "the next state is 0x0 (rom0 0x0002: 0xF0), the frame's first: it came back after 3 "
 	                    "cells, expected after 5");
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
+// Row 0 leads to the spare state 6, and so home: the pins differ two cells later, but row 0 is to blame.
+static void jump_to_a_spare_state(void **test)
+{
+	(void)test;
+	struct by_hand *hand = small_burned();
+	burn(hand, 0, 6, small_pins[1]);
+	struct proofs *proofs = prove(hand, 0);
+	const struct counterexample *found = failed(proofs);
+	assert_int_equal(found->cell, 0);
+	assert_int_equal(found->state, 0);
+	assert_string_equal(found->what, "the next state is 0x6, expected 0x1, which nothing else leads to");
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
+// Row 0 leads to 3, over two cells: row 1 is left without a predecessor.
+static void jump_ahead(void **test)
+{
+	(void)test;
+	struct by_hand *hand = small_burned();
+	burn(hand, 0, 3, small_pins[1]);
+	struct proofs *proofs = prove(hand, 0);
+	const struct counterexample *found = failed(proofs);
+	assert_int_equal(found->cell, 0);
+	assert_int_equal(found->state, 0);
+	assert_string_equal(found->what, "the next state is 0x3, expected 0x1, which nothing else leads to");
 	proofs_destroy(proofs);
 	by_hand_destroy(hand);
 }
@@ -231,6 +276,9 @@ int main(void)
 	const struct CMUnitTest tests[] = {
 		cmocka_unit_test(closed_frame),
 		cmocka_unit_test(back_too_early),
+		cmocka_unit_test(back_too_early_for_two_reasons),
+		cmocka_unit_test(jump_to_a_spare_state),
+		cmocka_unit_test(jump_ahead),
 		cmocka_unit_test(back_elsewhere),
 		cmocka_unit_test(back_too_late),
 		cmocka_unit_test(blames_the_chip_of_the_wrong_bit),

@@ -1,0 +1,82 @@
+// A jump: the machine leaves the frame's order because of a wrong next state. The faulty row itself looks innocent, and what goes wrong shows
+// cells later; but in a machine that closes, every state of the frame has one predecessor and no spare state has any.
+#include "proof/jump.h"
+
+#include <inttypes.h>
+
+#include "base/arena.h"
+
+// How many states that are not spare lead to each state, at most 2. A spare state is one that leads to the first.
+static uint8_t *count_predecessors(const struct trial *trial, const uint32_t *next)
+{
+	const size_t states = (size_t)1 << trial->wiring.state_bits;
+	uint8_t *counts = arena_array(trial->arena, states, sizeof *counts);
+	for (size_t state = 0; counts != NULL && state < states; state++)
+		if (next[state] != trial->lap.states[0] && counts[next[state]] < 2)
+			counts[next[state]]++;
+	return counts;
+}
+
+// The only state that leads on, and that nothing leads to: where the jump should have gone. False if there is no or more than one.
+static bool find_orphan(const struct trial *trial, const uint32_t *next, const uint8_t *counts, uint32_t *orphan)
+{
+	const size_t states = (size_t)1 << trial->wiring.state_bits;
+	const uint32_t first = trial->lap.states[0];
+	size_t found = 0;
+	for (size_t state = 0; state < states && found < 2; state++) {
+		if (state == first || next[state] == first || counts[state] > 0)
+			continue;
+		*orphan = (uint32_t)state;
+		found++;
+	}
+	return found == 1;
+}
+
+// Not cell 0, whose latched pins come from wherever the lap ended.
+static uint32_t first_wrong_pin(const struct trial *trial)
+{
+	uint32_t cell = 1;
+	while (cell < trial->timeline->cell_count && trial->lap.pins[cell] == trial->expected[cell])
+		cell++;
+	return cell;
+}
+
+// The first cell, before anything shows at the pins, whose successor has a second predecessor or is spare; leaves *cell if there is none.
+static void find_departure(const struct trial *trial, const uint32_t *next, const uint8_t *counts, uint32_t *cell)
+{
+	const struct lap *lap = &trial->lap;
+	const uint32_t limit = first_wrong_pin(trial);
+	for (uint32_t index = 0; index + 1 < limit && index + 2 < trial->period; index++) {
+		const uint32_t after = lap->states[index + 1];
+		if (after != lap->states[0] && counts[after] < 2 && next[after] != lap->states[0])
+			continue;
+		*cell = index;
+		return;
+	}
+}
+
+bool find_jump(const struct trial *trial, uint32_t loop_cell, struct counterexample *found)
+{
+	const size_t states = (size_t)1 << trial->wiring.state_bits;
+	uint32_t orphan, cell = loop_cell;
+	if (trial->wiring.advance != ADVANCE_TABLE)
+		return true;
+	uint32_t *next = arena_array(trial->arena, states, sizeof *next);
+	if (next == NULL)
+		return false;
+	machine_all_next(trial->machine, next, 1);
+	const uint8_t *counts = count_predecessors(trial, next);
+	if (counts == NULL)
+		return false;
+	if (!find_orphan(trial, next, counts, &orphan))
+		return true;
+	find_departure(trial, next, counts, &cell);
+	const uint32_t after = next[trial->lap.states[cell]];
+	struct counterexample jump = blame_next(trial, cell, after ^ orphan);
+	jump.what = arena_format(trial->proofs->arena, "the next state is 0x%" PRIX32 ", expected 0x%" PRIX32
+	                         ", which nothing else leads to", after, orphan);
+	if (jump.what == NULL)
+		return false;
+	*found = jump;
+	return true;
+}
