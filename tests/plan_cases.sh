@@ -9,6 +9,7 @@
 #
 # A case NAME of tests/good is `scanlatch build NAME.yaml -o out/NAME`, run in a copy of the folder, and at least one of
 #     NAME.stdout    what it prints on standard output, exactly
+#     NAME.check     what `scanlatch check NAME.yaml` prints there, exactly
 #     NAME.expected  what else must be, line by line (# starts a comment, but not in a stdout line):
 #         args WORD …            further arguments
 #         exit N                 the exit status, where that is not 0

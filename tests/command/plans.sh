@@ -66,10 +66,17 @@ prove_good() {
 	status_is "$1: prove" 0 $?
 }
 
+check_layout() {
+	[ -e "$work/good/$1.check" ] || return
+	run_program "$work/good" check "$1.yaml"
+	status_is "$1: check" 0 $?
+	same_file "$1: what check prints" "$work/good/$1.check" "$work/stdout"
+}
+
 check_good() {
 	local name=$1 base=$work/good/$1 wanted status line
 	local -a arguments
-	if [ ! -e "$base.stdout" ] && [ -z "$(expected_lines "$base")" ]; then
+	if [ ! -e "$base.stdout" ] && [ ! -e "$base.check" ] && [ -z "$(expected_lines "$base")" ]; then
 		fail "$name: neither $name.stdout nor anything in $name.expected"
 		return
 	fi
@@ -86,6 +93,7 @@ check_good() {
 		expect_line "$name" "${line%% *}" "${line#* }"
 	done < <(expected_lines "$base")
 	[ "$status" -ne 0 ] || prove_good "$name"
+	check_layout "$name"
 }
 
 check_bad() {
