@@ -22,24 +22,21 @@ struct finder {
 	uint32_t best_turn, best_cells;
 };
 
-// Lists the loop that state 0 falls into.
+// Lists the loop that state 0 falls into: the walk there from the first state that comes up again.
 static bool list_loop(struct finder *finder)
 {
 	size_t states = (size_t)1 << finder->wiring->state_bits;
 	uint32_t *seen = arena_array(finder->arena, states, sizeof *seen);
-	if (seen == NULL)
+	uint32_t *walk = arena_array(finder->arena, states, sizeof *walk);
+	if (seen == NULL || walk == NULL)
 		return false;
-	uint32_t state = machine_settle(finder->machine, 0), step = 0;
-	for (; seen[state] == 0; state = machine_next(finder->machine, state))
-		seen[state] = ++step;
-	finder->length = step - seen[state] + 1;
-	finder->states = arena_array(finder->arena, finder->length, sizeof *finder->states);
-	if (finder->states == NULL)
-		return false;
-	for (uint32_t index = 0; index < finder->length; index++) {
-		finder->states[index] = state;
-		state = machine_next(finder->machine, state);
+	uint32_t state = machine_settle(finder->machine, 0), steps = 0;
+	for (; seen[state] == 0; state = machine_next(finder->machine, state)) {
+		walk[steps] = state;
+		seen[state] = ++steps;
 	}
+	finder->states = walk + (seen[state] - 1);
+	finder->length = steps - (seen[state] - 1);
 	return true;
 }
 

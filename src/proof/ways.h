@@ -9,13 +9,16 @@ struct arena;
 struct machine;
 struct wiring;
 
-// What the upper bits of a record's `way` say; the lower ones hold a count of cells or a place.
+// What the upper bits of a record's `way` say; the lower ones hold a count of cells, or a place plus WAY_PLACE_0.
 #define WAY_KIND 0xE0000000u
 #define WAY_UNKNOWN 0u             // subject: the next state
 #define WAY_PASSING 0x20000000u    // a counter's passing state: falls to 0 at once and shares its way
-#define WAY_SEGMENT 0x40000000u    // subject: the segment; count: place in it
+#define WAY_SEGMENT 0x40000000u    // subject: the segment; then its place in it
 #define WAY_LOST 0x60000000u
 #define WAY_HOME 0x80000000u       // subject: where it enters the frame; count: cells until then
+
+// No place lies farther from place 0 than there are states.
+#define WAY_PLACE_0 0x01000000u
 
 // The first word is what machine_all_next fills in.
 struct way_record {
@@ -23,7 +26,7 @@ struct way_record {
 	uint32_t way;
 };
 
-// Where the first state of a segment of a long chain leads.
+// Where place 0 of a segment of a long chain leads.
 struct way_segment {
 	bool lost;
 	uint32_t entry;
@@ -47,8 +50,8 @@ struct way {
 };
 
 // Follows every state of the machine until it meets the frame, whose states are frame_states[frame_count], a loop in order,
-// all different. 8 bytes a state and some 100 KiB in the arena; time linear in the states: each is read once from where its
-// predecessor led. NULL when memory is out.
+// all different. 8 bytes a state, and a fraction of a byte more, in the arena; time linear in the states: each is read once
+// from where its predecessor led. NULL when memory is out.
 struct ways *ways_find(struct arena *arena, const struct machine *machine, const struct wiring *wiring,
                        const uint32_t *frame_states, uint32_t frame_count);
 
@@ -62,7 +65,7 @@ static inline struct way ways_of(const struct ways *ways, uint32_t state)
 	if (kind != WAY_SEGMENT || ways->segments[record.subject].lost)
 		return (struct way){.lost = true};
 	const struct way_segment *segment = &ways->segments[record.subject];
-	return (struct way){.cells = segment->cells - count, .entry = segment->entry};
+	return (struct way){.cells = segment->cells + WAY_PLACE_0 - count, .entry = segment->entry};
 }
 
 #endif

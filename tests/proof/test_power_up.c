@@ -225,7 +225,7 @@ static void random_machines(void **test)
 	(void)test;
 	static uint32_t order[1 << 12], next[1 << 12];
 	uint64_t seed = 11;
-	for (unsigned round = 0; round < 120; round++) {
+	for (unsigned round = 0; round < 400; round++) {
 		unsigned state_bits = 1 + round % 12;
 		uint32_t states = 1u << state_bits, frame = 1 + random_below(&seed, round % 3 == 0 ? states : (states + 7) / 8);
 		uint32_t homing = random_below(&seed, 4); // some machines mostly lead home, some hardly
@@ -287,6 +287,51 @@ static void long_chains(void **test)
 	compare_chain(100, 64000, 7);
 }
 
+// Every state leads `step` states on, but 0 is the frame. With an odd step all states lead home, from -k × step in k cells; an even one
+// leaves loops of odd states. Chains cross each other in step, more often than there is room for.
+static void compare_steps(uint32_t step, uint32_t lost)
+{
+	enum { STATE_BITS = 14, STATES = 1 << STATE_BITS };
+	static uint32_t next[STATES];
+	const uint32_t frame = 0;
+	for (uint32_t state = 1; state < STATES; state++)
+		next[state] = (state + step) % STATES;
+	struct listed listed = list_machine(STATE_BITS, next, &frame, 1);
+	assert_int_equal(listed.ways->lost_states, lost);
+	uint32_t state = 0, cells = 0;
+	do {
+		struct way way = ways_of(listed.ways, state);
+		assert_false(way.lost);
+		assert_int_equal(way.cells, cells);
+		assert_int_equal(way.entry, 0);
+		state = (state + STATES - step % STATES) % STATES;
+		cells++;
+	} while (state != 0);
+	assert_int_equal(cells, STATES - lost);
+	assert_int_equal(listed.ways->longest_cells, cells - 1);
+	assert_int_equal(listed.ways->longest_state, step % STATES);
+	for (uint32_t other = 1; lost > 0 && other < STATES; other += 2)
+		assert_true(ways_of(listed.ways, other).lost);
+	check_second_loop(&listed);
+	release(&listed);
+}
+
+static void chains_in_step(void **test)
+{
+	(void)test;
+	enum { STATES = 1 << 14 };
+	compare_steps(1, 0);
+	compare_steps(STATES - 1, 0);
+	compare_steps(63, 0);
+	compare_steps(STATES - 63, 0);
+	compare_steps(65, 0);
+	compare_steps(STATES / 2 + 1, 0);
+	compare_steps(2, STATES / 2);
+	compare_steps(64, STATES / 64 * 63);
+	compare_steps(STATES - 64, STATES / 64 * 63);
+	compare_steps(1024, STATES / 1024 * 1023);
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
@@ -299,6 +344,7 @@ int main(void)
 		cmocka_unit_test(counter_overflows),
 		cmocka_unit_test(random_machines),
 		cmocka_unit_test(long_chains),
+		cmocka_unit_test(chains_in_step),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }
