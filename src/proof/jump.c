@@ -41,14 +41,34 @@ static uint32_t first_wrong_pin(const struct trial *trial)
 	return cell;
 }
 
-// The first cell, before anything shows at the pins, whose successor has a second predecessor or is spare; leaves *cell if there is none.
-static void find_departure(const struct trial *trial, const uint32_t *next, const uint8_t *counts, uint32_t *cell)
+// What is known before the search for the row at fault.
+struct search {
+	const struct trial *trial;
+	const uint32_t *next;
+	const uint8_t *counts;
+	uint32_t limit;      // the first cell with a wrong pin
+	bool frame_is_whole; // as many states lead on as a frame has: so a state that leads home is spare, and no row of the frame gone wrong
+};
+
+static size_t count_leading_on(const struct trial *trial, const uint32_t *next)
 {
-	const struct lap *lap = &trial->lap;
-	const uint32_t limit = first_wrong_pin(trial);
-	for (uint32_t index = 0; index + 1 < limit && index + 2 < trial->period; index++) {
+	const size_t states = (size_t)1 << trial->wiring.state_bits;
+	size_t count = 0;
+	for (size_t state = 0; state < states; state++)
+		count += next[state] != trial->lap.states[0];
+	return count;
+}
+
+// The first cell, before anything shows at the pins, whose successor has a second predecessor or is spare. Leaves *cell, where the states first
+// went wrong, if there is none.
+static void find_departure(const struct search *search, uint32_t *cell)
+{
+	const struct lap *lap = &search->trial->lap;
+	if (lap->return_cells == 0 && *cell < search->limit)
+		return; // a state came again before anything showed: the row that leads there is at fault
+	for (uint32_t index = 0; index < search->limit && index + 2 < search->trial->period; index++) {
 		const uint32_t after = lap->states[index + 1];
-		if (after != lap->states[0] && counts[after] < 2 && next[after] != lap->states[0])
+		if (after != lap->states[0] && search->counts[after] < 2 && !(search->frame_is_whole && search->next[after] == lap->states[0]))
 			continue;
 		*cell = index;
 		return;
@@ -58,7 +78,7 @@ static void find_departure(const struct trial *trial, const uint32_t *next, cons
 bool find_jump(const struct trial *trial, uint32_t loop_cell, struct counterexample *found)
 {
 	const size_t states = (size_t)1 << trial->wiring.state_bits;
-	uint32_t orphan, cell = loop_cell;
+	uint32_t orphan = 0, cell = loop_cell;
 	if (trial->wiring.advance != ADVANCE_TABLE)
 		return true;
 	uint32_t *next = arena_array(trial->arena, states, sizeof *next);
@@ -70,7 +90,8 @@ bool find_jump(const struct trial *trial, uint32_t loop_cell, struct counterexam
 		return false;
 	if (!find_orphan(trial, next, counts, &orphan))
 		return true;
-	find_departure(trial, next, counts, &cell);
+	const struct search search = {trial, next, counts, first_wrong_pin(trial), count_leading_on(trial, next) + 1 >= trial->period};
+	find_departure(&search, &cell);
 	const uint32_t after = next[trial->lap.states[cell]];
 	struct counterexample jump = blame_next(trial, cell, after ^ orphan);
 	jump.what = arena_format(trial->proofs->arena, "the next state is 0x%" PRIX32 ", expected 0x%" PRIX32
