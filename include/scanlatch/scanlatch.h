@@ -49,7 +49,7 @@ typedef struct scanlatch_plan scanlatch_plan;
 /* Reads a plan from memory (copied) and lays out its timeline. `name` is what messages call it; its last part becomes the
  * manifest's file name. NULL after adding at least one error to messages. The messages keep the text, so they must outlive the plan. */
 scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t length, scanlatch_messages *messages);
-/* The same from a file; "-" is standard input. */
+/* The same from a file; "-" is standard input, and called so. */
 scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *messages);
 void scanlatch_plan_destroy(scanlatch_plan *plan);
 

@@ -37,7 +37,7 @@ scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *m
 	if (arena == NULL)
 		report(messages, path, READ_MEMORY, 0, "", 0);
 	else if (read_file(arena, path, "a plan", SCANLATCH_PLAN_BYTES, &bytes, &length, messages))
-		plan = scanlatch_plan_read(path, bytes, length, messages);
+		plan = scanlatch_plan_read(source_label(path), bytes, length, messages);
 	arena_destroy(arena);
 	return plan;
 }

@@ -45,7 +45,10 @@ char *take_json(json_t *document);
 // True if every chip has its bytes; otherwise adds an error for each that has not. `folder`: where they were looked for, or NULL.
 bool images_complete(const scanlatch_images *images, const char *folder, scanlatch_messages *messages);
 
-// A source of a file's name alone, for messages about it; "-" is named standard input. NULL when memory is out.
+// What messages call a file: its path, or "standard input" for "-". Cannot fail.
+const char *source_label(const char *file);
+
+// A source of a file's label alone, for messages about it. NULL when memory is out.
 const struct source *source_of_name(scanlatch_messages *messages, const char *file);
 
 #endif

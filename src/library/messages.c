@@ -82,9 +82,14 @@ char *scanlatch_messages_text(const scanlatch_messages *messages, bool colour)
 	return take_string(&text);
 }
 
+const char *source_label(const char *file)
+{
+	return strcmp(file, "-") == 0 ? "standard input" : file;
+}
+
 const struct source *source_of_name(scanlatch_messages *messages, const char *file)
 {
-	const char *name = strcmp(file, "-") == 0 ? "standard input" : file;
+	const char *name = source_label(file);
 	struct source *source = arena_alloc(messages->names, sizeof *source);
 	if (source != NULL)
 		source->name = arena_copy(messages->names, name, strlen(name));
