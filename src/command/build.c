@@ -194,7 +194,10 @@ static int write_files(const struct build *build)
 	struct write_failure failure;
 	if (file_write_all(build->arena, build->options->directory, build->files, build->file_count, &failure))
 		return EXIT_GOOD;
-	fprintf(stderr, "scanlatch: cannot %s %s: %s; nothing was written\n", failure.step, failure.path, strerror(failure.error));
+	// Renames come last: when one fails, those before it have been done.
+	const bool begun = strcmp(failure.step, "rename") == 0;
+	fprintf(stderr, "scanlatch: cannot %s %s: %s; %s\n", failure.step, failure.path, strerror(failure.error),
+	        begun ? "files before it may be new already" : "nothing was written");
 	return EXIT_SYSTEM;
 }
 
