@@ -235,16 +235,12 @@ static void mark_passing(struct chase *chase, const struct machine *machine)
 			chase->records[state].way = WAY_PASSING;
 }
 
-// Passing states are on no chain; 0 is settled by definition.
+// Passing states are on no chain. Whatever loop a counter is in, it comes by 0, which is settled by definition: 0 is in the frame.
 static void finish_passing(struct chase *chase)
 {
-	bool lost = ways_of(chase->ways, 0).lost;
-	for (uint32_t state = 1; state < chase->states; state++) {
-		if (chase->records[state].way != WAY_PASSING)
-			continue;
-		chase->records[state] = chase->records[0];
-		chase->ways->lost_states += lost;
-	}
+	for (uint32_t state = 1; state < chase->states; state++)
+		if (chase->records[state].way == WAY_PASSING)
+			chase->records[state] = chase->records[0];
 }
 
 static struct chase *chase_create(struct arena *arena, uint32_t states)

@@ -67,14 +67,17 @@ static void holds_decide(void **test)
 	}
 }
 
-// No turn fits: the one that agrees longest is taken. Row 2 has lost the sync of cell 3; from any other turn the pins differ sooner.
+// No turn fits: the one that agrees longest is taken. The row of cell 2 has lost the sync of cell 3; from any other turn the pins differ
+// sooner. State 0, where the walk begins, is cell 2.
 static void longest_agreement(void **test)
 {
 	(void)test;
-	struct by_hand *hand = small_burned();
-	burn(hand, 2, 3, SMALL_BLANK);
+	struct by_hand *hand = small_board();
+	add_straight_chips(hand);
+	burn_small(hand, (uint32_t[]){3, 4, 0, 1, 2});
+	burn(hand, 0, 1, SMALL_BLANK);
 	struct proofs *proofs = find(hand);
-	assert_int_equal(proofs->closure.start_state, 0);
+	assert_int_equal(proofs->closure.start_state, 3);
 	assert_verdict(proofs, PROOF_CLOSURE, VERDICT_PASS);
 	assert_verdict(proofs, PROOF_SIGNALS, VERDICT_FAIL);
 	assert_int_equal(proofs->proof[PROOF_SIGNALS].counterexample.cell, 3);

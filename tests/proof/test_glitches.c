@@ -292,6 +292,46 @@ static void passing_code_of_its_own(void **test)
 	by_hand_destroy(hand);
 }
 
+// 4 cells: the passing state is 4, code 2, reached from code 1 by way of 3 or 0, and left through one bit.
+static void on_the_way_to_the_passing_state(void **test)
+{
+	(void)test;
+	struct by_hand *hand = passing_counter(4, (const uint32_t[]){3}, 1);
+	struct proofs *proofs = prove(hand, 0);
+	assert_verdict(proofs, PROOF_GLITCHES, VERDICT_FAIL);
+	assert_int_equal(proofs->glitches.multi_bit_edges, 1);
+	assert_int_equal(proofs->glitches.first[0].cell, 0);
+	assert_int_equal(proofs->glitches.first[0].from_code, 1);
+	assert_int_equal(proofs->glitches.first[0].to_code, 0);
+	assert_int_equal(proofs->glitches.first[0].between_code, 3);
+	assert_int_equal(proofs->glitches.first[0].count, 1);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
+// Edges that look alike in their lower bits are judged each for itself. Asserted at 0x1001 alone; codes 3, 0, 0x1003, 0 and around:
+// 3 → 0 passes 1 and 2; 0 → 0x1003 and 0x1003 → 0 may pass 0x1001; 0 → 3 passes 1 and 2.
+static void edges_alike(void **test)
+{
+	(void)test;
+	static const uint32_t codes[] = {0x1001}, states[] = {3, 0, 0x1003, 0x2000};
+	struct by_hand *hand = by_hand_create(14);
+	add_decoded(hand, "gate", add_field(hand, "lower", 12, 0), codes, 1);
+	size_t line = add_line(hand, "line", 4, (uint64_t[]){0, 0, 0, 0});
+	set_frame(hand, 1, &line);
+	add_straight_chips(hand);
+	for (uint32_t cell = 0; cell < 4; cell++)
+		burn(hand, states[cell], states[(cell + 1) % 4], 0);
+	struct proofs *proofs = prove(hand, 3);
+	assert_int_equal(proofs->glitches.multi_bit_edges, 4);
+	assert_int_equal(proofs->glitches.disturbed, 1);
+	assert_int_equal(proofs->glitches.first[0].cell, 2);
+	assert_int_equal(proofs->glitches.first[0].between_code, 0x1001);
+	assert_int_equal(proofs->glitches.first[0].count, 2);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
 static void nothing_to_disturb(void **test)
 {
 	(void)test;
@@ -337,6 +377,8 @@ int main(void)
 		cmocka_unit_test(disturbed_loop),
 		cmocka_unit_test(passing_state),
 		cmocka_unit_test(passing_code_of_its_own),
+		cmocka_unit_test(on_the_way_to_the_passing_state),
+		cmocka_unit_test(edges_alike),
 		cmocka_unit_test(nothing_to_disturb),
 		cmocka_unit_test(direct_outputs_settle),
 	};

@@ -206,6 +206,29 @@ static void banks(void **test)
 	by_hand_destroy(hand);
 }
 
+// Bank 1 does not close: its power-up cannot be judged, whatever bank 0 did.
+static void a_bank_that_does_not_close(void **test)
+{
+	(void)test;
+	struct by_hand *hand = small_board();
+	hand->plan.bank_bits = 1;
+	add_straight_chips(hand);
+	for (uint32_t bank = 0; bank < 2; bank++)
+		for (uint32_t state = 0; state < 8; state++)
+			burn_row(hand, bank, state, state < 4 ? state + 1 : 0, false, small_pins[state < 4 ? state + 1 : 0]);
+	burn_row(hand, 1, 1, 0, false, small_pins[2]);
+	struct proofs *proofs = prove(hand, 0);
+	assert_verdict(proofs, PROOF_CLOSURE, VERDICT_FAIL);
+	assert_verdict(proofs, PROOF_UPSET, VERDICT_FAIL);
+	assert_int_equal(proofs->proof[PROOF_CLOSURE].counterexample.bank, 1);
+	assert_int_equal(proofs->proof[PROOF_UPSET].counterexample.bank, 1);
+	assert_string_equal(proofs->proof[PROOF_UPSET].counterexample.what, "not judged: the frame does not close");
+	assert_int_equal(proofs->upset.upsets, 15); // of bank 0
+	assert_int_equal(proofs->power_up.states, 8);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
 // Means are over all banks: in bank 1 the spare 3 takes two cells home, by way of no other, so flips to it take longer.
 static void means_over_banks(void **test)
 {
@@ -244,6 +267,7 @@ int main(void)
 		cmocka_unit_test(flips_in_counters),
 		cmocka_unit_test(flips_in_a_full_machine),
 		cmocka_unit_test(banks),
+		cmocka_unit_test(a_bank_that_does_not_close),
 		cmocka_unit_test(means_over_banks),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);

@@ -151,6 +151,21 @@ static void listed_codes(void **test)
 	by_hand_destroy(hand);
 }
 
+// Direct outputs or not, a state comes from the row before.
+static void codes_with_direct_outputs(void **test)
+{
+	(void)test;
+	static const uint32_t codes[] = {1, 3};
+	struct by_hand *hand = decoded_board(codes, 2, (uint32_t[]){0, 2, 4, 1});
+	hand->plan.machine.outputs = OUTPUTS_DIRECT;
+	struct proofs *proofs = prove(hand, 0);
+	assert_int_equal(failed(proofs)->cell, 2);
+	assert_int_equal(failed(proofs)->state, 2);
+	assert_int_equal(failed(proofs)->byte.address, 2);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
 static void codes_out_of_the_images(void **test)
 {
 	(void)test;
@@ -265,6 +280,7 @@ int main(void)
 		cmocka_unit_test(direct_pin),
 		cmocka_unit_test(leading_pin),
 		cmocka_unit_test(listed_codes),
+		cmocka_unit_test(codes_with_direct_outputs),
 		cmocka_unit_test(codes_out_of_the_images),
 		cmocka_unit_test(leading_codes),
 		cmocka_unit_test(held_bits),
