@@ -5,6 +5,12 @@
 // Held comparisons may take so many times the cells of frame and loop.
 #define BUDGET_LAPS 64u
 
+// What is seen of a decoder whose codes are not known: attempt * 2 + level, where the code came up last.
+struct unknown_decoder {
+	const struct decoder *decoder;
+	uint32_t *seen;            // [codes]
+};
+
 struct finder {
 	struct arena *arena;
 	const struct timeline *timeline;
@@ -19,6 +25,9 @@ struct finder {
 	bool anchored;             // some cell is held
 	uint32_t anchor;           // the cell whose held value is rarest in the loop
 	uint64_t budget;
+	struct unknown_decoder *unknown;
+	size_t unknown_count;
+	uint32_t attempt;          // of reading codes, from 1
 	uint32_t best_turn, best_cells;
 };
 
@@ -58,6 +67,22 @@ static bool read_pins(struct finder *finder, const struct decoders *decoders)
 		finder->pins[index] |= decoders_pins(decoders, finder->states[index]);
 	}
 	return true;
+}
+
+static bool list_unknown(struct finder *finder, const struct decoders *decoders)
+{
+	finder->unknown = arena_array(finder->arena, decoders->count, sizeof *finder->unknown);
+	for (size_t index = 0; finder->unknown != NULL && index < decoders->count; index++) {
+		const struct decoder *decoder = &decoders->list[index];
+		if (decoder->known)
+			continue;
+		struct unknown_decoder *unknown = &finder->unknown[finder->unknown_count++];
+		unknown->decoder = decoder;
+		unknown->seen = arena_array(finder->arena, (size_t)decoder->code_mask + 1, sizeof *unknown->seen);
+		if (unknown->seen == NULL)
+			return false;
+	}
+	return finder->unknown != NULL;
 }
 
 static bool same_pins(const struct finder *finder, uint64_t left, uint64_t right)
@@ -128,11 +153,28 @@ static bool held_agrees(const struct finder *finder, uint32_t turn, uint32_t cel
 	return (wrong & timeline->hold_mask[cell]) == 0;
 }
 
-// How many cells from the first on agree in their held bits.
+// Whether no code of a decoder that is not known has come up under the other level in this attempt.
+static bool codes_agree(const struct finder *finder, uint32_t turn, uint32_t cell)
+{
+	const uint32_t state = turned_state(finder, turn, cell);
+	for (size_t index = 0; index < finder->unknown_count; index++) {
+		const struct decoder *decoder = finder->unknown[index].decoder;
+		uint32_t *seen = &finder->unknown[index].seen[decoder_code(decoder, state)];
+		const uint32_t now = finder->attempt * 2 + (uint32_t)(finder->expected[cell] >> decoder->signal & 1);
+		if ((*seen ^ now) == 1)
+			return false;
+		*seen = now;
+	}
+	return true;
+}
+
+// How many cells from the first on agree in their held bits and in codes that are not known.
 static uint32_t held_cells(struct finder *finder, uint32_t turn)
 {
 	uint32_t cell = 0;
-	while (cell < finder->timeline->cell_count && held_agrees(finder, turn, cell))
+	finder->attempt++;
+	while (cell < finder->timeline->cell_count && (!finder->anchored || held_agrees(finder, turn, cell)) &&
+	       codes_agree(finder, turn, cell))
 		cell++;
 	finder->budget -= cell < finder->budget ? cell : finder->budget;
 	return cell;
@@ -145,9 +187,9 @@ static bool try_turn(struct finder *finder, uint32_t turn)
 	uint32_t agreeing = cells;
 	if (finder->anchored && !held_agrees(finder, turn, finder->anchor))
 		agreeing = 0;
-	else if (finder->anchored && finder->budget > 0)
+	else if ((finder->anchored || finder->unknown_count > 0) && finder->budget > 0)
 		agreeing = held_cells(finder, turn);
-	else if (finder->anchored)
+	else if (finder->anchored || finder->unknown_count > 0)
 		agreeing = 0;
 	// Any turn whose pins agree is better than one whose pins do not.
 	if (finder->best_cells < cells || agreeing > finder->best_cells - cells) {
@@ -180,15 +222,52 @@ static void match_turns(struct finder *finder)
 	}
 }
 
+// The state of the loop that the most states lead to: spare rows lead to the frame's first cell. *rank is how many do.
+static bool find_most_led_to(struct finder *finder, uint32_t *turn, uint32_t *rank)
+{
+	const size_t states = (size_t)1 << finder->wiring->state_bits;
+	uint32_t *next = arena_array(finder->arena, states, sizeof *next);
+	uint32_t *counts = arena_array(finder->arena, states, sizeof *counts);
+	if (next == NULL || counts == NULL)
+		return false;
+	machine_all_next(finder->machine, next, 1);
+	for (size_t state = 0; state < states; state++)
+		counts[next[state]]++;
+	for (uint32_t index = 0; index < finder->length; index++)
+		if (counts[finder->states[index]] > *rank) {
+			*turn = index;
+			*rank = counts[finder->states[index]];
+		}
+	return true;
+}
+
+// Whether the frame's known pins agree with the loop at a turn.
+static bool pins_agree(const struct finder *finder, uint32_t turn)
+{
+	uint32_t place = turn;
+	for (uint32_t cell = 0; cell < finder->timeline->cell_count; cell++) {
+		if (!same_pins(finder, finder->pins[place], finder->expected[cell]))
+			return false;
+		place = place + 1 == finder->length ? 0 : place + 1;
+	}
+	return true;
+}
+
 bool frame_find(struct arena *arena, const struct timeline *timeline, const struct wiring *wiring,
                 const struct machine *machine, const uint64_t *expected, const struct decoders *decoders, uint32_t *start)
 {
 	struct finder finder = {.arena = arena, .timeline = timeline, .wiring = wiring, .machine = machine,
 	                        .expected = expected};
-	if (!list_loop(&finder) || !read_pins(&finder, decoders) || !find_borders(&finder) || !choose_anchor(&finder))
+	uint32_t turn = 0, rank = 0;
+	if (!list_loop(&finder) || !read_pins(&finder, decoders) || !list_unknown(&finder, decoders) ||
+	    !choose_anchor(&finder) || !find_most_led_to(&finder, &turn, &rank))
 		return false;
 	finder.budget = BUDGET_LAPS * ((uint64_t)timeline->cell_count + finder.length);
-	match_turns(&finder);
+	const bool led_to_first = rank > 1 && pins_agree(&finder, turn) && try_turn(&finder, turn);
+	if (!led_to_first && !find_borders(&finder))
+		return false;
+	if (!led_to_first)
+		match_turns(&finder);
 	*start = finder.states[finder.best_turn];
 	return true;
 }
