@@ -11,6 +11,8 @@
 #include "table/code_space.h"
 #include "table/faults.h"
 
+struct quiet;
+
 struct assignment {
 	const struct constraints *constraints;
 	const struct code_space *codes;
@@ -28,9 +30,9 @@ bool assignment_create(struct assignment *assignment, struct arena *arena, const
 // states. False with faults where that fails.
 bool assignment_begin(struct assignment *assignment, struct faults *faults);
 
-// Gives states to the held cells that have none. wanted[cell] is the code that a cell would like to have (NULL: none in particular).
-// False with a fault for each set of classes that is short of states. Memory is taken from the arena.
-bool assignment_hold(struct assignment *assignment, struct arena *arena, const uint32_t *wanted, struct faults *faults);
+// Gives states to the held cells that have none, in quiet codes where `quiet` is not NULL. False with faults where not all of them
+// can have a state. Memory is taken from the arena.
+bool assignment_hold(struct assignment *assignment, struct arena *arena, struct quiet *quiet, struct faults *faults);
 
 // Matches the held cells that are left. False with faults where not all of them can have a state.
 bool assignment_augment(struct assignment *assignment, struct arena *arena, struct faults *faults);

@@ -16,7 +16,7 @@ static bool allocate_field(struct automatic_field *field, struct arena *arena)
 	field->asserted = arena_array(arena, field->values, sizeof(uint64_t));
 	return field->pattern_of != NULL && field->shares != NULL && field->group_size != NULL && field->group_of_value != NULL &&
 	       field->holder != NULL && field->label != NULL && field->asserted != NULL &&
-	       key_map_create(&field->patterns, arena, patterns) && key_map_create(&field->groups, arena, patterns);
+	       key_map_create(&field->patterns, arena, patterns, 0) && key_map_create(&field->groups, arena, patterns, 0);
 }
 
 static void find_patterns(struct automatic_field *field)
@@ -134,7 +134,7 @@ static void hold_values(struct automatic_field *field, const struct assignment *
 			continue;
 		}
 		field->shares[pattern].held_cells++;
-		hold_value(field, field_value(field->field, start ? assignment->start : cell_value(constraints, cell)), cell, pattern, faults);
+		hold_value(field, start ? field->start : field_value(field->field, cell_value(constraints, cell)), cell, pattern, faults);
 	}
 }
 
@@ -235,6 +235,7 @@ bool automatic_label(struct automatic_field *field, const struct assignment *ass
 {
 	const size_t before = faults->count;
 	clear_field(field);
+	field->start = assignment->start_fixed ? field_value(field->field, assignment->start) : NO_CODE;
 	hold_values(field, assignment, faults);
 	if (faults->count > before)
 		return false;

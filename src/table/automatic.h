@@ -34,6 +34,7 @@ struct automatic_field {
 	uint32_t *group_size;      // [groups.count]: values that will do
 	uint32_t *group_of_value;  // [values]; KEY_ABSENT: no cell asks for it
 	uint32_t *holder;          // [values]: cell + 1 that holds this value, or 0
+	uint32_t start;            // the value in the first cell's state if that is fixed, else NO_CODE
 	uint32_t *label;           // [values]: the pattern that has it, or NO_PATTERN
 	uint64_t *asserted;        // [values]: automatic signals of the label
 };

@@ -5,11 +5,12 @@
 // How often pattern, family and class change from a cell to the next: no more of them can there be.
 struct changes {
 	size_t patterns, families, classes;
+	uint32_t bits;    // held bits that ever differ from one cell to the next
 };
 
 static struct changes count_changes(const struct constraints *constraints)
 {
-	struct changes changes = {1, 1, 1};
+	struct changes changes = {1, 1, 1, 0};
 	for (uint32_t cell = 1; cell < constraints->period; cell++) {
 		const uint32_t mask = cell_mask(constraints, cell);
 		const bool pattern = cell_levels(constraints, cell) != cell_levels(constraints, cell - 1);
@@ -18,8 +19,17 @@ static struct changes count_changes(const struct constraints *constraints)
 		changes.patterns += pattern;
 		changes.families += family;
 		changes.classes += class && mask != constraints->state_mask;
+		changes.bits |= cell_value(constraints, cell) ^ cell_value(constraints, cell - 1);
 	}
 	return changes;
+}
+
+static unsigned lowest_bit(uint32_t bits)
+{
+	unsigned bit = 0;
+	while (bits != 0 && (bits >> bit & 1) == 0)
+		bit++;
+	return bit;
 }
 
 static bool allocate(struct constraints *constraints, struct arena *arena)
@@ -32,9 +42,9 @@ static bool allocate(struct constraints *constraints, struct arena *arena)
 	constraints->class_of_cell = arena_array(arena, constraints->period, sizeof(uint32_t));
 	return constraints->pattern_cells != NULL && constraints->pattern_first != NULL && constraints->class_first != NULL &&
 	       constraints->class_cells != NULL && constraints->class_of_cell != NULL &&
-	       key_map_create(&constraints->patterns, arena, changes.patterns) &&
-	       key_map_create(&constraints->families, arena, changes.families) &&
-	       key_map_create(&constraints->classes, arena, changes.classes);
+	       key_map_create(&constraints->patterns, arena, changes.patterns, 0) &&
+	       key_map_create(&constraints->families, arena, changes.families, 0) &&
+	       key_map_create(&constraints->classes, arena, changes.classes, lowest_bit(changes.bits));
 }
 
 static uint32_t add_pattern(struct constraints *constraints, uint32_t cell)

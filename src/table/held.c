@@ -3,6 +3,7 @@
 #include <string.h>
 
 #include "base/arena.h"
+#include "table/walk.h"
 
 #define EXHAUSTED UINT32_MAX
 
@@ -59,7 +60,7 @@ static uint32_t pick_any(struct server *server)
 }
 
 // Returns how many cells of the class are left without a state.
-static uint32_t serve_class(struct server *server, uint32_t class, const uint32_t *wanted)
+static uint32_t serve_class(struct server *server, uint32_t class)
 {
 	const struct constraints *constraints = server->assignment->constraints;
 	uint32_t left = 0;
@@ -72,9 +73,7 @@ static uint32_t serve_class(struct server *server, uint32_t class, const uint32_
 		const uint32_t cell = constraints->held_cells[index];
 		if (server->assignment->state_of_cell[cell] != NO_STATE)
 			continue;
-		uint32_t state = wanted != NULL && wanted[cell] != NO_CODE ? pick(server, wanted[cell]) : NO_STATE;
-		if (state == NO_STATE)
-			state = pick_any(server);
+		const uint32_t state = pick_any(server);
 		if (state != NO_STATE)
 			assignment_place(server->assignment, cell, state);
 		left += state == NO_STATE;
@@ -99,18 +98,30 @@ static uint32_t held_widths(const struct constraints *constraints)
 	return widths;
 }
 
-bool assignment_hold(struct assignment *assignment, struct arena *arena, const uint32_t *wanted, struct faults *faults)
+static uint32_t serve_width(struct server *server, unsigned width)
 {
-	const struct constraints *constraints = assignment->constraints;
+	const struct constraints *constraints = server->assignment->constraints;
+	uint32_t left = 0;
+	for (uint32_t class = 0; class < constraints->classes.count; class++)
+		if (count_bits(class_mask(constraints, class)) == width)
+			left += serve_class(server, class);
+	return left;
+}
+
+bool assignment_hold(struct assignment *assignment, struct arena *arena, struct quiet *quiet, struct faults *faults)
+{
+	const uint32_t widths = held_widths(assignment->constraints);
 	struct server server = {.assignment = assignment};
-	const uint32_t widths = held_widths(constraints);
 	uint32_t left = 0;
 	server.cursors = arena_array(arena, assignment->codes->count, sizeof *server.cursors);
 	if (server.cursors == NULL)
 		return faults_memory(faults);
-	for (unsigned width = LIMIT_STATE_BITS; width > 0; width--)
-		for (uint32_t class = 0; (widths >> width & 1) != 0 && class < constraints->classes.count; class++)
-			if (count_bits(class_mask(constraints, class)) == width)
-				left += serve_class(&server, class, wanted);
+	for (unsigned width = LIMIT_STATE_BITS; width > 0; width--) {
+		if ((widths >> width & 1) == 0)
+			continue;
+		if (quiet != NULL && !walk_hold(assignment, quiet, width, arena))
+			return faults_memory(faults);
+		left += serve_width(&server, width);
+	}
 	return left == 0 || assignment_augment(assignment, arena, faults);
 }

@@ -17,6 +17,8 @@ struct run {
 	uint32_t mask, value, pattern;   // codes with these bits and this pattern, in the code space
 	uint32_t vector;                 // the first of its vectors, that of its last cell
 	uint32_t steps;                  // how many it has; cells further from the run's end share the last
+	uint32_t target;                 // the code that most of the run is to have, NO_CODE: not looked for yet
+	bool arrived;
 };
 
 // The vector of a cell says for each code of the cell before how many fields must jump, by more than one bit, from there on to the
@@ -38,19 +40,26 @@ struct quiet {
 	unsigned replans;
 	bool ahead;
 	uint32_t *near_start;     // [patterns]: codes of the pattern before this one in the list are used up
+	uint32_t *excluded;       // [codes]: cell + 1 for which the code will not do
+	uint32_t *reached;        // [codes]: what flood found
+	uint32_t *reached_from;   // [codes]: the code before it, NO_CODE if it was not found
 };
 
 static bool allocate_window(struct quiet *quiet, struct arena *arena, uint32_t codes)
 {
-	const size_t vectors = AHEAD_BYTES / codes;
+	const size_t runs = AHEAD_BYTES / codes / RUN_STEPS, cells = quiet->assignment->constraints->period;
+	const size_t vectors = (runs < cells ? runs : cells) * RUN_STEPS;
 	quiet->run_limit = (uint32_t)(vectors / RUN_STEPS);
 	quiet->vectors = arena_array(arena, vectors, codes);
 	quiet->dropped = arena_array(arena, vectors, 1);
 	quiet->terminal = arena_array(arena, codes, 1);
 	quiet->blocked = arena_array(arena, codes, 1);
 	quiet->runs = arena_array(arena, quiet->run_limit, sizeof *quiet->runs);
+	quiet->reached = arena_array(arena, codes, sizeof *quiet->reached);
+	quiet->reached_from = arena_array(arena, codes, sizeof *quiet->reached_from);
 	return quiet->vectors != NULL && quiet->dropped != NULL && quiet->terminal != NULL && quiet->blocked != NULL &&
-	       quiet->runs != NULL && relaxer_create(&quiet->relaxer, arena, quiet->assignment->codes);
+	       quiet->runs != NULL && quiet->reached != NULL && quiet->reached_from != NULL &&
+	       relaxer_create(&quiet->relaxer, arena, quiet->assignment->codes);
 }
 
 struct quiet *quiet_create(struct arena *arena, const struct assignment *assignment)
@@ -62,7 +71,8 @@ struct quiet *quiet_create(struct arena *arena, const struct assignment *assignm
 	quiet->assignment = assignment;
 	quiet->ahead = codes > 1 && codes <= AHEAD_CODES;
 	quiet->near_start = arena_array(arena, assignment->constraints->patterns.count, sizeof *quiet->near_start);
-	if (quiet->near_start == NULL || (quiet->ahead && !allocate_window(quiet, arena, codes)))
+	quiet->excluded = arena_array(arena, codes, sizeof *quiet->excluded);
+	if (quiet->near_start == NULL || quiet->excluded == NULL || (quiet->ahead && !allocate_window(quiet, arena, codes)))
 		return NULL;
 	return quiet;
 }
@@ -70,6 +80,17 @@ struct quiet *quiet_create(struct arena *arena, const struct assignment *assignm
 bool quiet_looks_ahead(const struct quiet *quiet)
 {
 	return quiet->ahead;
+}
+
+void quiet_begin(struct quiet *quiet)
+{
+	quiet->valid_end = 0;
+	quiet->replans = 0;
+}
+
+void quiet_exclude(struct quiet *quiet, uint32_t cell, uint32_t code)
+{
+	quiet->excluded[code] = cell + 1;
 }
 
 void quiet_replan(struct quiet *quiet)
@@ -97,13 +118,20 @@ static struct run run_at(const struct quiet *quiet, uint32_t cell)
 	return (struct run){.first_cell = cell,
 	                    .mask = code_of_state(quiet->assignment->codes, class_mask(constraints, class)),
 	                    .value = code_of_state(quiet->assignment->codes, class_value(constraints, class)),
-	                    .pattern = class_pattern(constraints, class)};
+	                    .pattern = class_pattern(constraints, class),
+	                    .target = NO_CODE};
 }
 
 static bool allows(const struct quiet *quiet, const struct run *run, uint32_t code)
 {
 	return quiet->assignment->codes->pattern_of_code[code] == run->pattern && (code & run->mask) == run->value &&
 	       quiet->assignment->remaining[code] > 0;
+}
+
+// The same for one cell of the run.
+static bool allows_here(const struct quiet *quiet, const struct run *run, uint32_t cell, uint32_t code)
+{
+	return allows(quiet, run, code) && quiet->excluded[code] != cell + 1;
 }
 
 static uint32_t run_end(const struct quiet *quiet, uint32_t run)
@@ -203,7 +231,7 @@ static const uint8_t *vector_after(const struct quiet *quiet, uint32_t cell)
 static bool may_stay(const struct quiet *quiet, uint32_t cell, uint32_t previous, const uint8_t *after)
 {
 	const struct run *run = &quiet->runs[quiet->current];
-	if (previous == NO_CODE || !allows(quiet, run, previous))
+	if (previous == NO_CODE || !allows_here(quiet, run, cell, previous))
 		return false;
 	const uint32_t distance = run_end(quiet, quiet->current) - 1 - cell;
 	if (distance >= run->steps)
@@ -224,14 +252,78 @@ static uint32_t rate(const struct quiet *quiet, uint32_t cell, uint32_t previous
 	return jumps << 16 | (uint32_t)(quiet->assignment->remaining[code] < left) << 8 | bits;
 }
 
-static uint32_t choose_ahead(const struct quiet *quiet, uint32_t cell, uint32_t previous)
+// Finds, in steps of one bit, all codes that are as good as `origin` for the cells of the current run that are far from its end; each with the
+// code that it was reached from. Returns how many there are, in `reached`.
+static uint32_t flood(struct quiet *quiet, uint32_t cell, uint32_t origin)
+{
+	const struct run *run = &quiet->runs[quiet->current];
+	const uint32_t codes = quiet->assignment->codes->count;
+	const uint8_t *far = vector_of(quiet, quiet->current, UINT32_MAX);
+	uint32_t count = 1;
+	for (uint32_t code = 0; code < codes; code++)
+		quiet->reached_from[code] = NO_CODE;
+	quiet->reached_from[origin] = origin;
+	quiet->reached[0] = origin;
+	for (uint32_t index = 0; index < count; index++)
+		for (uint32_t bit = 1; bit < codes; bit <<= 1) {
+			const uint32_t code = quiet->reached[index] ^ bit;
+			if (quiet->reached_from[code] != NO_CODE || far[code] != far[origin] || !allows_here(quiet, run, cell, code))
+				continue;
+			quiet->reached_from[code] = quiet->reached[index];
+			quiet->reached[count++] = code;
+		}
+	quiet->work += (uint64_t)codes + (uint64_t)count * LIMIT_STATE_BITS;
+	return count;
+}
+
+// The code with the most states left, of those that can be reached from where the run stands while its end is still far, and that have
+// enough for the rest of the run.
+static uint32_t find_richest(struct quiet *quiet, uint32_t cell, uint32_t previous)
+{
+	const struct run *run = &quiet->runs[quiet->current];
+	const uint32_t *remaining = quiet->assignment->remaining;
+	const uint32_t left = run_end(quiet, quiet->current) - cell;
+	const uint32_t count = left > 2 * run->steps ? flood(quiet, cell, previous) : 0;
+	uint32_t best = previous;
+	for (uint32_t index = 0; index < count; index++) {
+		uint32_t steps = 0;
+		for (uint32_t code = quiet->reached[index]; code != previous; code = quiet->reached_from[code])
+			steps++;
+		const uint32_t here = remaining[quiet->reached[index]];
+		if (here > remaining[best] && here >= left && left > 2 * run->steps + steps)
+			best = quiet->reached[index];
+	}
+	return best;
+}
+
+// A run that may stay where it is moves, once, to the code that has the most states left. So long runs spend the states of codes that
+// no other pattern is near to, and those that lead from pattern to pattern last till the frame's last line.
+static uint32_t move_on(struct quiet *quiet, uint32_t cell, uint32_t previous, const uint8_t *after)
+{
+	struct run *run = &quiet->runs[quiet->current];
+	if (run->target == NO_CODE)
+		run->target = find_richest(quiet, cell, previous);
+	if (run->arrived || run->target == previous) {
+		run->arrived = true;
+		return previous;
+	}
+	flood(quiet, cell, run->target);
+	const uint32_t next = quiet->reached_from[previous];
+	if (next != NO_CODE && after[next] == after[previous] && allows_here(quiet, run, cell, next))
+		return next;
+	run->arrived = true;
+	return previous;
+}
+
+static uint32_t choose_ahead(struct quiet *quiet, uint32_t cell, uint32_t previous)
 {
 	const uint8_t *after = vector_after(quiet, cell);
 	uint32_t best = NO_CODE, best_rate = UINT32_MAX;
 	if (may_stay(quiet, cell, previous, after))
-		return previous;
+		return move_on(quiet, cell, previous, after);
+	quiet->work += quiet->assignment->codes->count;
 	for (uint32_t code = 0; code < quiet->assignment->codes->count; code++) {
-		if (!allows(quiet, &quiet->runs[quiet->current], code))
+		if (!allows_here(quiet, &quiet->runs[quiet->current], cell, code))
 			continue;
 		const uint32_t here = rate(quiet, cell, previous, code, after);
 		if (here < best_rate) {
@@ -247,10 +339,10 @@ static uint32_t choose_near(struct quiet *quiet, uint32_t cell, uint32_t previou
 {
 	const struct code_space *codes = quiet->assignment->codes;
 	const struct run run = run_at(quiet, cell);
-	if (previous != NO_CODE && allows(quiet, &run, previous))
+	if (previous != NO_CODE && allows_here(quiet, &run, cell, previous))
 		return previous;
 	for (uint32_t bit = 1; previous != NO_CODE && bit < codes->count; bit <<= 1)
-		if (allows(quiet, &run, previous ^ bit))
+		if (allows_here(quiet, &run, cell, previous ^ bit))
 			return previous ^ bit;
 	uint32_t *start = &quiet->near_start[run.pattern];
 	const uint32_t *list = &codes->pattern_codes[codes->pattern_start[run.pattern]];
@@ -258,7 +350,7 @@ static uint32_t choose_near(struct quiet *quiet, uint32_t cell, uint32_t previou
 	while (*start < length && quiet->assignment->remaining[list[*start]] == 0)
 		(*start)++;
 	for (uint32_t index = *start; index < length; index++)
-		if (allows(quiet, &run, list[index]))
+		if (allows_here(quiet, &run, cell, list[index]))
 			return list[index];
 	return NO_CODE;
 }
@@ -272,6 +364,7 @@ uint32_t quiet_choose(struct quiet *quiet, uint32_t cell, uint32_t previous, uin
 	while (cell >= run_end(quiet, quiet->current))
 		quiet->current++;
 	const uint32_t code = choose_ahead(quiet, cell, previous);
+	quiet->ahead = quiet->work <= AHEAD_WORK;
 	// The way back to the first cell was not known yet.
 	if (first == NO_CODE)
 		quiet->valid_end = 0;

@@ -16,10 +16,16 @@ bool quiet_looks_ahead(const struct quiet *quiet);
 // The code of a cell if it has a state or its hold leaves but one code, else NO_CODE. Cannot fail.
 uint32_t quiet_settled(const struct quiet *quiet, uint32_t cell);
 
-// Chooses the code of a cell that is not settled: one that its class allows and of which states remain, or NO_CODE if there is none.
-// `previous` is the code of the cell before (NO_CODE for the first cell), `first` that of the first cell.
+// Starts a walk over the cells; it may be one of several. Cannot fail.
+void quiet_begin(struct quiet *quiet);
+
+// Chooses the code of a cell that is not settled: one that its class allows, of which states remain, and which is not excluded; or NO_CODE
+// if there is none. `previous` is the code of the cell before (NO_CODE for the first cell), `first` that of the first cell.
 // Calls are for ascending cells. Cannot fail.
 uint32_t quiet_choose(struct quiet *quiet, uint32_t cell, uint32_t previous, uint32_t first);
+
+// Says that a code will not do for a cell, which is to be chosen for again. Cannot fail.
+void quiet_exclude(struct quiet *quiet, uint32_t cell, uint32_t code);
 
 // Says that the states of some code are used up, so that the plan made ahead no longer holds. Cannot fail.
 void quiet_replan(struct quiet *quiet);

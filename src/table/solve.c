@@ -23,25 +23,16 @@ static void fill_codes(struct solver *solver)
 	code_space_fill(&solver->codes, solver->choices, solver->automatic_count);
 }
 
-static bool hold_cells(struct solver *solver, struct arena *arena, bool quietly, struct faults *faults)
+static bool assign(struct assignment *assignment, struct arena *arena, bool quietly, struct faults *faults)
 {
-	const struct constraints *constraints = solver->constraints;
-	uint32_t *wanted = NULL;
-	if (constraints->held_start[constraints->classes.count] == 0)
-		return true;
-	if (quietly && walk_has_wishes(constraints)) {
-		wanted = arena_array(arena, constraints->period, sizeof *wanted);
-		if (wanted == NULL || !walk_wish(&solver->assignment, arena, wanted))
-			return faults_memory(faults);
-	}
-	return assignment_hold(&solver->assignment, arena, wanted, faults);
-}
-
-static bool assign(struct solver *solver, struct arena *arena, bool quietly, struct faults *faults)
-{
-	if (!assignment_begin(&solver->assignment, faults) || !hold_cells(solver, arena, quietly, faults))
+	struct quiet *quiet = NULL;
+	if (!assignment_begin(assignment, faults))
 		return false;
-	return !quietly || walk_place(&solver->assignment, arena) || faults_memory(faults);
+	if (quietly && (quiet = quiet_create(arena, assignment)) == NULL)
+		return faults_memory(faults);
+	if (!assignment_hold(assignment, arena, quiet, faults))
+		return false;
+	return !quietly || walk_place(assignment, quiet, arena) || faults_memory(faults);
 }
 
 // Assigns states under the codes as they are. Without `quietly` it only finds out whether that can be done.
@@ -51,7 +42,7 @@ static bool try_codes(struct solver *solver, bool quietly, struct faults *faults
 	if (arena == NULL)
 		return faults_memory(faults);
 	fill_codes(solver);
-	const bool assigned = assign(solver, arena, quietly, faults);
+	const bool assigned = assign(&solver->assignment, arena, quietly, faults);
 	arena_destroy(arena);
 	return assigned;
 }

@@ -3,14 +3,13 @@
 #define SCANLATCH_TABLE_WALK_H
 
 #include "table/assignment.h"
+#include "table/quiet.h"
 
-// True if some held cell may have a choice of codes, so that walk_wish is of use. Cannot fail.
-bool walk_has_wishes(const struct constraints *constraints);
-
-// Fills wanted[period] with the codes that would be quiet for held cells; NO_CODE: no wish. False when memory is out.
-bool walk_wish(const struct assignment *assignment, struct arena *arena, uint32_t *wanted);
+// Gives states of quiet codes to those held cells that have a choice of codes and hold `width` bits, as far as there are any. False when
+// memory is out.
+bool walk_hold(struct assignment *assignment, struct quiet *quiet, unsigned width, struct arena *arena);
 
 // Gives every cell that has no state, all of them free, the lowest state of a quiet code. False when memory is out.
-bool walk_place(struct assignment *assignment, struct arena *arena);
+bool walk_place(struct assignment *assignment, struct quiet *quiet, struct arena *arena);
 
 #endif

@@ -19,7 +19,7 @@
 #define BENCH_FIELDS 8
 #define BENCH_SIGNALS 8
 #define BENCH_REGIONS 64
-#define BENCH_HOLDS 4
+#define BENCH_HOLDS 8
 #define BENCH_CHIPS 4
 
 #define SIGNAL(number) ((uint64_t)1 << (number))

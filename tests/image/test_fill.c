@@ -1,0 +1,296 @@
+// Bytes of chips, worked out by hand for small machines.
+
+#include "../table/builder.h"
+
+#include "image/image.h"
+
+#define NEXT(bit) {DATA_NEXT, bit}
+#define STATE(bit) {ADDRESS_STATE, bit}
+#define OPEN_DATA {DATA_OPEN, 0}
+#define OPEN_ADDRESS {ADDRESS_OPEN, 0}
+
+// Adds a chip without wires; all pins are open.
+static struct chip *add_chip(struct bench *bench, unsigned address_pins, unsigned data_pins)
+{
+	const size_t number = bench->plan.chip_count++;
+	assert_true(number < BENCH_CHIPS);
+	bench->parts[number] = (struct part){.name = "XROM", .address_pins = address_pins, .data_pins = data_pins};
+	bench->chips[number] = (struct chip){.label = "U1", .part = &bench->parts[number]};
+	return &bench->chips[number];
+}
+
+static void assert_bytes(const struct image *image, const uint8_t *bytes, size_t length)
+{
+	assert_int_equal(image->length, length);
+	assert_memory_equal(image->bytes, bytes, length);
+}
+
+// States 0, 1, 2, 3; sync, active low, in cell 3. Bits of a byte: D0, D1 next, D2 sync, D7 blank, which is high in cells 0 and 3.
+static struct bench *create_four(void)
+{
+	struct bench *bench = bench_create(2, 4);
+	const size_t sync = bench_data(bench, "sync"), blank = bench_data(bench, "blank");
+	bench->signals[sync].active_high = false;
+	bench_region(bench, "porch", 1, SIGNAL(blank));
+	bench_region(bench, "picture", 2, 0);
+	bench_region(bench, "sync", 1, SIGNAL(blank) | SIGNAL(sync));
+	return bench;
+}
+
+static void test_straight(void **state)
+{
+	(void)state;
+	struct bench *bench = create_four();
+	struct chip *chip = add_chip(bench, 3, 8);
+	memcpy(chip->address, (const struct address_wire[]){STATE(0), STATE(1)}, 2 * sizeof *chip->address);
+	memcpy(chip->data,
+	       (const struct data_wire[]){NEXT(0), NEXT(1), {DATA_SIGNAL, 0}, OPEN_DATA, OPEN_DATA, OPEN_DATA, OPEN_DATA, {DATA_SIGNAL, 1}},
+	       8 * sizeof *chip->data);
+	struct image image;
+	assert_true(images_fill(bench_table(bench), bench->arena, &image));
+	const uint8_t expected[] = {
+		0x7D,   // state 0: next 01, of cell 1: sync high (1 << 2), blank low; D3 to D6 open: 1
+		0x7E,   // state 1: next 10, of cell 2: sync high, blank low
+		0xFB,   // state 2: next 11, of cell 3: sync low, blank high
+		0xFC,   // state 3: next 00, of cell 0: sync high, blank high
+		0x7D, 0x7E, 0xFB, 0xFC,   // again with A2, which is open
+	};
+	assert_bytes(&image, expected, sizeof expected);
+	bench_destroy(bench);
+}
+
+// Two chips share the address in different orders, with pins that are low, high, open, or a bank's; the word is split between them.
+static void test_scrambled(void **state)
+{
+	(void)state;
+	struct bench *bench = create_four();
+	struct chip *left = add_chip(bench, 4, 8), *right = add_chip(bench, 3, 8);
+	memcpy(left->address, (const struct address_wire[]){STATE(1), {ADDRESS_LOW, 0}, STATE(0), {ADDRESS_BANK, 0}}, 4 * sizeof *left->address);
+	memcpy(right->address, (const struct address_wire[]){{ADDRESS_HIGH, 0}, STATE(1), STATE(0)}, 3 * sizeof *right->address);
+	for (unsigned pin = 0; pin < 8; pin++)
+		left->data[pin] = right->data[pin] = (struct data_wire)OPEN_DATA;
+	left->data[6] = (struct data_wire)NEXT(0);
+	left->data[1] = (struct data_wire){DATA_SIGNAL, 1};
+	right->data[0] = (struct data_wire){DATA_SIGNAL, 0};
+	right->data[7] = (struct data_wire)NEXT(1);
+	struct image images[2];
+	assert_true(images_fill(bench_table(bench), bench->arena, images));
+	// Left: D6 next.0, D1 blank, the other six 1: 0xBD | next.0 << 6 | blank << 1.
+	// State 0: next 01, blank 0: 0xFD. State 1: next 10, blank 0: 0xBD. State 2: next 11, blank 1: 0xFF. State 3: next 00, blank 1: 0xBF.
+	// Address: A0 is state.1, A2 is state.0.
+	const uint8_t left_bytes[] = {
+		0xFD, 0xFF, 0xFD, 0xFF,   // A2 = 0: states 0 and 2, the same with A1 (wired low) at 1
+		0xBD, 0xBF, 0xBD, 0xBF,   // A2 = 1: states 1 and 3
+		0xFD, 0xFF, 0xFD, 0xFF,   // A3, the bank's, makes no difference
+		0xBD, 0xBF, 0xBD, 0xBF,
+	};
+	// Right: D7 next.1, D0 sync: 0x7E | next.1 << 7 | sync. State 0: next 01, sync 1: 0x7F. State 1: next 10, sync 1: 0xFF.
+	// State 2: next 11, sync 0: 0xFE. State 3: next 00, sync 1: 0x7F. Address: A1 is state.1, A2 is state.0.
+	const uint8_t right_bytes[] = {
+		0x7F, 0x7F,   // A1 = A2 = 0: state 0, the same with A0 (wired high) at 0
+		0xFE, 0xFE,   // A1: state 2
+		0xFF, 0xFF,   // A2: state 1
+		0x7F, 0x7F,   // both: state 3
+	};
+	assert_bytes(&images[0], left_bytes, sizeof left_bytes);
+	assert_bytes(&images[1], right_bytes, sizeof right_bytes);
+	bench_destroy(bench);
+}
+
+// A part of 16 bits: low byte first; pins in an order that crosses the bytes.
+static void test_sixteen_bits(void **state)
+{
+	(void)state;
+	struct bench *bench = create_four();
+	struct chip *chip = add_chip(bench, 3, 16);
+	memcpy(chip->address, (const struct address_wire[]){STATE(1), STATE(0), OPEN_ADDRESS}, 3 * sizeof *chip->address);
+	chip->data[0] = (struct data_wire)NEXT(1);
+	chip->data[8] = (struct data_wire)NEXT(0);
+	chip->data[15] = (struct data_wire){DATA_SIGNAL, 0};
+	chip->data[4] = (struct data_wire){DATA_SIGNAL, 1};
+	for (unsigned pin = 0; pin < 16; pin++)
+		if (pin % 8 != 0 && pin != 15 && pin != 4)
+			chip->data[pin] = (struct data_wire)OPEN_DATA;
+	struct image image;
+	assert_true(images_fill(bench_table(bench), bench->arena, &image));
+	// Low byte 0xEE | next.1 | blank << 4, high byte 0x7E | next.0 | sync << 7.
+	const uint8_t expected[] = {
+		0xEE, 0xFF,   // state 0: next 01, sync 1, blank 0
+		0xFF, 0x7F,   // state 2: next 11, sync 0, blank 1
+		0xEF, 0xFE,   // state 1: next 10, sync 1, blank 0
+		0xFE, 0xFE,   // state 3: next 00, sync 1, blank 1
+		0xEE, 0xFF, 0xFF, 0x7F, 0xEF, 0xFE, 0xFE, 0xFE,   // A2 is open
+	};
+	assert_bytes(&image, expected, sizeof expected);
+	bench_destroy(bench);
+}
+
+// The same straight: a whole image is copied, not looked up.
+static void test_sixteen_bits_straight(void **state)
+{
+	(void)state;
+	struct bench *bench = create_four();
+	struct chip *chip = add_chip(bench, 2, 16);
+	memcpy(chip->address, (const struct address_wire[]){STATE(0), STATE(1)}, 2 * sizeof *chip->address);
+	chip->data[0] = (struct data_wire)NEXT(0);
+	chip->data[1] = (struct data_wire)NEXT(1);
+	chip->data[8] = (struct data_wire){DATA_SIGNAL, 0};
+	chip->data[9] = (struct data_wire){DATA_SIGNAL, 1};
+	for (unsigned pin = 2; pin < 16; pin++)
+		if (pin != 8 && pin != 9)
+			chip->data[pin] = (struct data_wire)OPEN_DATA;
+	struct image image;
+	assert_true(images_fill(bench_table(bench), bench->arena, &image));
+	const uint8_t expected[] = {
+		0xFD, 0xFD,   // state 0: next 01; sync 1, blank 0
+		0xFE, 0xFD,   // state 1: next 10
+		0xFF, 0xFE,   // state 2: next 11; sync 0, blank 1
+		0xFC, 0xFF,   // state 3: next 00; sync 1, blank 1
+	};
+	assert_bytes(&image, expected, sizeof expected);
+	bench_destroy(bench);
+}
+
+// A counter of two bits with three cells; clear on D7. Rows that are no cell's assert it, and with a synchronous clear the last cell's.
+static void test_counter(void **state)
+{
+	(void)state;
+	for (int clear = CLEAR_SYNC; clear <= CLEAR_ASYNC; clear++) {
+		struct bench *bench = bench_create(2, 4);
+		const size_t sync = bench_data(bench, "sync");
+		bench->plan.machine.advance = ADVANCE_COUNT;
+		bench->plan.machine.clear = (enum clear_kind)clear;
+		bench_region(bench, "line", 2, 0);
+		bench_region(bench, "sync", 1, SIGNAL(sync));
+		struct chip *chip = add_chip(bench, 2, 8);
+		memcpy(chip->address, (const struct address_wire[]){STATE(0), STATE(1)}, 2 * sizeof *chip->address);
+		memset(chip->data, 0, sizeof chip->data);
+		chip->data[0] = (struct data_wire){DATA_SIGNAL, 0};
+		chip->data[7] = (struct data_wire){DATA_CLEAR, 0};
+		struct image image;
+		assert_true(images_fill(bench_table(bench), bench->arena, &image));
+		const uint8_t expected[] = {
+			0x7E,                                // state 0: cell 1 is no sync
+			0x7F,                                // state 1: cell 2 is
+			clear == CLEAR_SYNC ? 0xFE : 0x7E,   // state 2, the last
+			0xFE,                                // state 3: cleared, as before cell 0
+		};
+		assert_bytes(&image, expected, sizeof expected);
+		bench_destroy(bench);
+	}
+}
+
+// A spare row of a table with direct outputs: next is the first cell's state, sync at rest (high), blank asserted.
+static void test_spare_rows(void **state)
+{
+	(void)state;
+	struct bench *bench = bench_create(2, 4);
+	const size_t sync = bench_data(bench, "sync"), blank = bench_data(bench, "blank");
+	bench->signals[sync].active_high = false;
+	bench->plan.role_signal[ROLE_BLANKING] = (int)blank;
+	bench->plan.machine.outputs = OUTPUTS_DIRECT;
+	bench_start(bench, 2);
+	bench_region(bench, "sync", 1, SIGNAL(sync) | SIGNAL(blank));
+	bench_region(bench, "picture", 1, 0);
+	struct chip *chip = add_chip(bench, 2, 8);
+	memcpy(chip->address, (const struct address_wire[]){STATE(0), STATE(1)}, 2 * sizeof *chip->address);
+	memset(chip->data, 0, sizeof chip->data);
+	memcpy(chip->data, (const struct data_wire[]){NEXT(0), NEXT(1), {DATA_SIGNAL, 0}, {DATA_SIGNAL, 1}}, 4 * sizeof *chip->data);
+	struct image image;
+	assert_true(images_fill(bench_table(bench), bench->arena, &image));
+	const uint8_t expected[] = {
+		0xF6,   // state 0, the picture: next 10, sync high, blank low
+		0xFE,   // state 1, spare: next 10, sync high, blank high
+		0xF8,   // state 2, sync: next 00, sync low, blank high
+		0xFE,   // state 3, spare
+	};
+	assert_bytes(&image, expected, sizeof expected);
+	bench_destroy(bench);
+}
+
+// What one data pin of a chip holds at a state, bit by bit.
+static unsigned pin_level(const struct table *table, const struct data_wire wire, uint32_t state)
+{
+	struct row row = table->spare;
+	for (uint32_t cell = 0; cell < table->period; cell++)
+		if (table->state_of_cell[cell] == state)
+			row = table_row(table, cell);
+	if (wire.kind == DATA_NEXT)
+		return row.next >> wire.index & 1;
+	if (wire.kind == DATA_SIGNAL)
+		return row.levels >> wire.index & 1;
+	return 1;
+}
+
+// Ten state bits over thirteen address pins and two chips, wired at random: each bit of each image against its wires.
+static void test_random_wires(void **state)
+{
+	(void)state;
+	struct bench *bench = bench_create(10, 700);
+	uint32_t number = 3;
+	for (int signal = 0; signal < 6; signal++)
+		bench_data(bench, "signal");
+	bench_start(bench, 77);
+	bench_region(bench, "all", 700, 0);
+	for (uint32_t cell = 0; cell < 700; cell++)
+		bench->laid.asserted[cell] = (number = number * 1664525u + 1013904223u) >> 26;
+	for (unsigned index = 0; index < 2; index++) {
+		struct chip *chip = add_chip(bench, 13, index == 0 ? 8 : 16);
+		for (unsigned pin = 0; pin < 13; pin++) {
+			number = number * 1664525u + 1013904223u;
+			const unsigned other = (number >> 16) % (pin + 1);
+			chip->address[pin] = chip->address[other];
+			chip->address[other] = pin < 10 ? (struct address_wire)STATE(pin) : (struct address_wire){(enum address_wire_kind)(pin - 10), 0};
+		}
+		for (unsigned pin = 0; pin < chip->part->data_pins; pin++) {
+			const unsigned bit = index * 8 + pin;
+			chip->data[pin] = bit < 10 ? (struct data_wire)NEXT(9 - bit) : bit < 16 ? (struct data_wire){DATA_SIGNAL, 15 - bit} : (struct data_wire)OPEN_DATA;
+		}
+	}
+	struct image images[2];
+	const struct table *table = bench_table(bench);
+	assert_true(images_fill(table, bench->arena, images));
+	for (unsigned index = 0; index < 2; index++) {
+		const struct chip *chip = &bench->chips[index];
+		const unsigned width = chip->part->data_pins / 8;
+		assert_int_equal(images[index].length, 8192 * width);
+		for (uint32_t address = 0; address < 8192; address += 7) {
+			uint32_t at = 0;
+			for (unsigned pin = 0; pin < 13; pin++)
+				if (chip->address[pin].kind == ADDRESS_STATE && (address >> pin & 1) != 0)
+					at |= 1u << chip->address[pin].index;
+			for (unsigned pin = 0; pin < chip->part->data_pins; pin++)
+				assert_int_equal(images[index].bytes[address * width + pin / 8] >> pin % 8 & 1, pin_level(table, chip->data[pin], at));
+		}
+	}
+	bench_destroy(bench);
+}
+
+// Check value of CRC-32/ISO-HDLC: Greg Cook, "Catalogue of parametrised CRC algorithms". The sum: 0x31 + … + 0x39.
+static void test_checksums(void **state)
+{
+	(void)state;
+	uint8_t digits[] = "123456789";
+	const struct image image = {digits, 9};
+	assert_int_equal(image_crc32(&image), 0xCBF43926);
+	assert_int_equal(image_sum16(&image), 477);
+	uint8_t full[65794];
+	memset(full, 0xFF, sizeof full);
+	const struct image large = {full, sizeof full};
+	assert_int_equal(image_sum16(&large), (65794u * 255u) % 65536u);
+}
+
+int main(void)
+{
+	const struct CMUnitTest tests[] = {
+		cmocka_unit_test(test_straight),
+		cmocka_unit_test(test_scrambled),
+		cmocka_unit_test(test_sixteen_bits),
+		cmocka_unit_test(test_sixteen_bits_straight),
+		cmocka_unit_test(test_counter),
+		cmocka_unit_test(test_spare_rows),
+		cmocka_unit_test(test_random_wires),
+		cmocka_unit_test(test_checksums),
+	};
+	return cmocka_run_group_tests(tests, NULL, NULL);
+}
