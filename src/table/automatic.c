@@ -92,8 +92,12 @@ static uint32_t pattern_at(const struct automatic_field *field, uint32_t cell)
 	return key_map_find(&field->patterns, cell_levels(field->constraints, cell) & field->signals);
 }
 
+// Cells of two patterns hold one value; told once for each value.
 static void report_two(const struct automatic_field *field, uint32_t value, uint32_t cell, struct faults *faults)
 {
+	for (size_t index = 0; index < faults->count; index++)
+		if (faults->list[index].field == field->index && faults->list[index].available == value)
+			return;
 	struct fault fault = fault_at(RULE_CODE_CONFLICT, field->holder[value] - 1);
 	fault.other = cell;
 	fault.field = field->index;

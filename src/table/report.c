@@ -48,6 +48,17 @@ static struct place hold_place(const struct reporter *reporter, uint32_t cell)
 	return region->hold_count > 0 ? region->holds[0].place : region->place;
 }
 
+// The place of the hold that has to do with a field: the first that shares bits with it. Otherwise as above.
+static struct place field_place(const struct reporter *reporter, uint32_t cell, size_t field)
+{
+	const struct region *region = timeline_region(reporter->timeline, cell);
+	const struct field *fields = reporter->plan->machine.fields;
+	for (size_t index = 0; field != NO_SUBJECT && index < region->hold_count; index++)
+		if ((field_mask(&fields[region->holds[index].field]) & field_mask(&fields[field])) != 0)
+			return region->holds[index].place;
+	return hold_place(reporter, cell);
+}
+
 static const char *field_name(const struct reporter *reporter, size_t field)
 {
 	return reporter->plan->machine.fields[field].name;
@@ -193,14 +204,21 @@ static void also_codes(const struct reporter *reporter, size_t field)
 	}
 }
 
+// Two cells hold one code. The start, too, holds one.
+static void report_code_twice(const struct reporter *reporter, const struct fault *fault)
+{
+	const bool start = is_start(reporter, fault->cell);
+	diagnose(reporter->diagnostics, RULE_CODE_CONFLICT,
+	         start ? hold_place(reporter, fault->cell) : field_place(reporter, fault->cell, fault->field),
+	         "%s, and %s, are held to one code, %u, of field \"%s\", but differ in its signals, which have codes: auto",
+	         cell_words(reporter, fault->cell), cell_words(reporter, fault->other), fault->available, field_name(reporter, fault->field));
+	diagnose_also(reporter->diagnostics, field_place(reporter, fault->other, fault->field), "the second of the two is held here");
+}
+
 static void report_code_conflict(const struct reporter *reporter, const struct fault *fault)
 {
 	if (fault->other != NO_CELL) {
-		diagnose(reporter->diagnostics, RULE_CODE_CONFLICT, hold_place(reporter, fault->cell),
-		         "%s, and %s, are held to one code, %u, of field \"%s\", but differ in its signals, which have codes: auto",
-		         cell_words(reporter, fault->cell), cell_words(reporter, fault->other), fault->available,
-		         field_name(reporter, fault->field));
-		diagnose_also(reporter->diagnostics, hold_place(reporter, fault->other), "the second of the two is held here");
+		report_code_twice(reporter, fault);
 		return;
 	}
 	const uint64_t asserted = asserted_at(reporter, fault->cell);
@@ -208,7 +226,7 @@ static void report_code_conflict(const struct reporter *reporter, const struct f
 	const bool held = mask_at(reporter, fault->cell) != 0;
 	const char *what = field == NO_SUBJECT ? "the decoded fields together have"
 	                                       : or_unnamed(arena_format(reporter->arena, "field \"%s\" has", field_name(reporter, field)));
-	diagnose(reporter->diagnostics, RULE_CODE_CONFLICT, hold_place(reporter, fault->cell), "%s: %s no code%s for %s",
+	diagnose(reporter->diagnostics, RULE_CODE_CONFLICT, field_place(reporter, fault->cell, field), "%s: %s no code%s for %s",
 	         cell_words(reporter, fault->cell), what, held ? " that the hold allows" : "", levels_words(reporter, field, asserted));
 	also_codes(reporter, field);
 }
@@ -283,7 +301,7 @@ static void report_counted_conflict(const struct reporter *reporter, const struc
 	else if (fault->other != NO_CELL)
 		report_counted_automatic(reporter, fault);
 	else if (fault->signal == NO_SUBJECT)
-		diagnose(reporter->diagnostics, RULE_COUNTED_CONFLICT, hold_place(reporter, fault->cell),
+		diagnose(reporter->diagnostics, RULE_COUNTED_CONFLICT, field_place(reporter, fault->cell, fault->field),
 		         "%s: field \"%s\" is held to %u, but the counter has state %u, with %u there", cell_words(reporter, fault->cell),
 		         field_name(reporter, fault->field), fault->needed, fault->state, fault->available);
 	else
