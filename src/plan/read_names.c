@@ -2,7 +2,9 @@
 
 #include <string.h>
 
+#include "base/excerpt.h"
 #include "base/text.h"
+#include "plan/characters.h"
 #include "plan/expression.h"
 
 #define NAME_CHARACTERS 40
@@ -42,20 +44,26 @@ bool check_identifier(struct reader *reader, const struct node *node, const char
 	return true;
 }
 
+// True if a terminal shows the name as it stands: no control characters, and none that steer the direction of text.
+static bool is_shown_as_is(const struct node *node)
+{
+	struct text shown = {0};
+	excerpt_put_printable(node->text, node->length, &shown);
+	const bool same = shown.length == node->length && memcmp(text_string(&shown), node->text, node->length) == 0;
+	text_release(&shown);
+	return same;
+}
+
 bool check_printable_name(struct reader *reader, const struct node *node, const char *what)
 {
+	char quoted[QUOTATION_BYTES];
 	size_t characters = 0;
-	bool good = node->length > 0;
-	for (size_t index = 0; good && index < node->length; index++) {
-		const unsigned char byte = (unsigned char)node->text[index];
-		characters += (byte & 0xC0u) != 0x80u;
-		good = byte >= 0x20 && byte != 0x7F && byte != '"' && byte != '\'';
-	}
-	if (good && characters <= NAME_CHARACTERS)
+	for (size_t offset = 0; offset < node->length; offset += character_bytes(node->text + offset, node->length - offset))
+		characters++;
+	if (characters >= 1 && characters <= NAME_CHARACTERS && strpbrk(node->text, "\"'") == NULL && is_shown_as_is(node))
 		return true;
-	diagnose(reader->diagnostics, RULE_BAD_NAME, node->place,
-	         "%s: wanted 1 to %d printable characters without quotes, found %s", what, NAME_CHARACTERS,
-	         node->length == 0 ? "nothing" : good ? "more" : "others");
+	diagnose(reader->diagnostics, RULE_BAD_NAME, node->place, "%s %s: wanted 1 to %d printable characters without quotes", what,
+	         quotation(quoted, node->text, node->length), NAME_CHARACTERS);
 	return false;
 }
 
