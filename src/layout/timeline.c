@@ -166,33 +166,3 @@ const char *timeline_region_name(const struct timeline *timeline, uint32_t cell)
 {
 	return timeline_region(timeline, cell)->name;
 }
-
-static bool cells_equal(const struct timeline *timeline, uint32_t left, uint32_t right)
-{
-	return timeline->asserted[left] == timeline->asserted[right] &&
-	       (!timeline->has_holds || (timeline->hold_mask[left] == timeline->hold_mask[right] &&
-	                                 timeline->hold_value[left] == timeline->hold_value[right]));
-}
-
-// The failure function of Knuth, Morris and Pratt (1977): the longest proper border of the frame gives its shortest period.
-uint32_t timeline_period(const struct timeline *timeline)
-{
-	const uint32_t count = timeline->cell_count;
-	struct arena *arena = arena_create();
-	uint32_t *border = arena != NULL ? arena_array(arena, count, sizeof *border) : NULL;
-	uint32_t period = 0;
-	if (border != NULL) {
-		uint32_t length = 0;
-		for (uint32_t cell = 1; cell < count; cell++) {
-			while (length > 0 && !cells_equal(timeline, cell, length))
-				length = border[length - 1];
-			length += cells_equal(timeline, cell, length);
-			border[cell] = length;
-		}
-		period = count - border[count - 1];
-		if (count % period != 0)
-			period = count;
-	}
-	arena_destroy(arena);
-	return period;
-}

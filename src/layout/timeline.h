@@ -72,8 +72,15 @@ const char *timeline_line_name(const struct timeline *timeline, uint32_t cell);
 const char *timeline_region_name(const struct timeline *timeline, uint32_t cell);
 const struct region *timeline_region(const struct timeline *timeline, uint32_t cell);
 
-// The shortest period of the frame in cells: the smallest p dividing cell_count such that asserted signals and holds repeat after
-// p cells. Linear time. 0 when memory is out.
+// The shortest period of the frame in cells: the smallest p dividing cell_count such that asserted signals repeat after p cells. Linear time. 0 when
+// memory is out.
 uint32_t timeline_period(const struct timeline *timeline);
+
+// The same, counting held bits too: then the whole frame is no harder to find states for than this much of it.
+uint32_t timeline_held_period(const struct timeline *timeline);
+
+// Folds the holds of all laps of a period into one: mask[period] and value[period], to be given by the caller, hold what any lap holds. False if two
+// laps hold a bit to different values. Only for timelines with holds.
+bool timeline_fold_holds(const struct timeline *timeline, uint32_t period, uint32_t *mask, uint32_t *value);
 
 #endif

@@ -9,14 +9,56 @@ static bool report_memory(const struct plan *plan, struct diagnostics *diagnosti
 	return false;
 }
 
-static bool choose_states(struct table *table, struct arena *scratch, struct faults *faults)
+static bool solve_period(struct table *table, const struct timeline *folded, struct arena *scratch, struct faults *faults)
 {
 	struct constraints constraints;
-	if (!constraints_create(&constraints, scratch, table->timeline, table->pins, table->period))
+	if (!constraints_create(&constraints, scratch, folded, table->pins, table->period))
 		return faults_memory(faults);
 	if (table->wiring.advance == ADVANCE_COUNT)
 		return count_states(&constraints, scratch, table->state_of_cell, faults);
 	return solve_states(&constraints, scratch, table->state_of_cell, faults);
+}
+
+// The timeline with the holds of all laps of the table's period in each. False if they contradict each other.
+static bool fold_timeline(const struct table *table, struct arena *scratch, struct timeline *folded, bool *memory_out)
+{
+	const uint32_t period = table->period;
+	*folded = *table->timeline;
+	if (!folded->has_holds || period == folded->cell_count)
+		return true;
+	folded->hold_mask = arena_array(scratch, period, sizeof *folded->hold_mask);
+	folded->hold_value = arena_array(scratch, period, sizeof *folded->hold_value);
+	*memory_out = folded->hold_mask == NULL || folded->hold_value == NULL;
+	return !*memory_out && timeline_fold_holds(table->timeline, period, folded->hold_mask, folded->hold_value);
+}
+
+// Tries the table's period. *faults is filled only if the holds of its laps agree, so that the next longer one may be judged on its own.
+static bool try_period(struct table *table, struct faults *faults)
+{
+	struct arena *scratch = arena_create();
+	struct timeline folded;
+	bool memory_out = scratch == NULL, solved = false;
+	if (!memory_out && fold_timeline(table, scratch, &folded, &memory_out)) {
+		*faults = (struct faults){.count = 0};
+		solved = solve_period(table, &folded, scratch, faults);
+	}
+	arena_destroy(scratch);
+	return memory_out ? faults_memory(faults) : solved;
+}
+
+// The shortest period of the signals is tried first. What one lap leaves free another may hold, so where its constraints contradict each other or find no
+// states, longer ones follow, up to that at which the holds repeat too: from there on, nothing becomes easier.
+static bool choose_states(struct table *table, struct faults *faults)
+{
+	const struct timeline *timeline = table->timeline;
+	const uint32_t shortest = timeline_period(timeline), longest = timeline_held_period(timeline);
+	if (shortest == 0 || longest == 0)
+		return faults_memory(faults);
+	for (table->period = shortest; table->period < longest; table->period += shortest)
+		if (longest % table->period == 0 && try_period(table, faults))
+			return true;
+	table->period = longest;
+	return try_period(table, faults);
 }
 
 // The codes that come up in cells where a signal is asserted: what a reader of the images alone finds too.
@@ -90,12 +132,11 @@ static bool fill_table(struct table *table, struct arena *scratch, struct diagno
 	const struct plan *plan = table->timeline->plan;
 	struct faults faults = {.count = 0};
 	table->wiring = wiring_of(plan);
-	table->period = timeline_period(table->timeline);
 	table->pins = timeline_pins(table->timeline, table->arena);
-	table->state_of_cell = arena_array(table->arena, table->period, sizeof *table->state_of_cell);
-	if (table->period == 0 || table->pins == NULL || table->state_of_cell == NULL)
+	table->state_of_cell = arena_array(table->arena, table->timeline->cell_count, sizeof *table->state_of_cell);
+	if (table->pins == NULL || table->state_of_cell == NULL)
 		return report_memory(plan, diagnostics);
-	if (!choose_states(table, scratch, &faults)) {
+	if (!choose_states(table, &faults)) {
 		faults_report(&faults, table->timeline, diagnostics);
 		return false;
 	}

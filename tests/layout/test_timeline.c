@@ -111,7 +111,8 @@ static void holds_are_evaluated_in_every_cell(void **state)
 		assert_int_equal(laid.timeline->hold_mask[cell], cell % 3 == 0 ? 0 : 0x3F);
 		assert_int_equal(laid.timeline->hold_value[cell], expected[cell % 6]);
 	}
-	assert_int_equal(timeline_period(laid.timeline), 6);
+	assert_int_equal(timeline_period(laid.timeline), 1); // no signal is asserted
+	assert_int_equal(timeline_held_period(laid.timeline), 6);
 	release(&laid);
 	laid = lay("", "  a: { regions: [ { region: p, cells: 2, hold: { at: 0x30, top: 0x0B + 0 } } ] }\n", "  - { repeat: 1, line: a }\n");
 	assert_laid(&laid); // top 0x0B has bits 4 and 5 set, as at 0x30 asks
@@ -160,6 +161,32 @@ static void the_period_divides_the_frame(void **state)
 	release(&laid);
 }
 
+// What one lap leaves free another may hold; two values for one bit can not be folded.
+static void holds_of_all_laps_are_folded(void **state)
+{
+	(void)state;
+	const char *lines = "  a: { regions: [ { region: p, cells: 1, assert: [sync] }, { region: q, cells: 2, hold: { at: 5 + col } } ] }\n"
+	                    "  b: { regions: [ { region: p, cells: 1, assert: [sync], hold: { at: 9 } }, { region: q, cells: 2 } ] }\n"
+	                    "  c: { like: a, change: [ { region: q, hold: { at: 5 + 2*col } } ] }\n";
+	uint32_t mask[6], value[6];
+	struct laid laid = lay("", lines, "  - { repeat: 1, line: a }\n  - { repeat: 1, line: b }\n");
+	assert_laid(&laid);
+	assert_int_equal(timeline_period(laid.timeline), 3);
+	assert_int_equal(timeline_held_period(laid.timeline), 6);
+	assert_true(timeline_fold_holds(laid.timeline, 3, mask, value));
+	const uint32_t expected[] = {9, 5, 6};
+	for (uint32_t cell = 0; cell < 3; cell++) {
+		assert_int_equal(mask[cell], 0x3F);
+		assert_int_equal(value[cell], expected[cell]);
+	}
+	release(&laid);
+	laid = lay("", lines, "  - { repeat: 1, line: a }\n  - { repeat: 1, line: c }\n"); // 6 and 7 in their last cells
+	assert_laid(&laid);
+	assert_false(timeline_fold_holds(laid.timeline, 3, mask, value));
+	assert_true(timeline_fold_holds(laid.timeline, 6, mask, value));
+	release(&laid);
+}
+
 static void a_cell_knows_its_place(void **state)
 {
 	(void)state;
@@ -188,6 +215,7 @@ int main(void)
 		cmocka_unit_test(pins_are_shifted_by_the_lead),
 		cmocka_unit_test(holds_are_evaluated_in_every_cell),
 		cmocka_unit_test(the_period_divides_the_frame),
+		cmocka_unit_test(holds_of_all_laps_are_folded),
 		cmocka_unit_test(a_cell_knows_its_place),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
