@@ -51,6 +51,8 @@ files a.bin
 size a.bin 3
 bytes a.bin 0x1 FF ff  # two of them'
 put right/good/more.stderr 'seen'
+put right/good/laid.yaml 'case $ARGUMENTS in check*) echo "$ARGUMENTS" ;; esac'
+put right/good/laid.check 'check laid.yaml'
 put right/good/erased.yaml 'printf "\377\377" >"$OUT/b.bin"'
 put right/good/erased.expected 'every b.bin FF'
 put right/bad/unknown-key-made.make 'echo "echo \"unknown-key-made.yaml: error: made [unknown-key]\" >&2; exit 2"'
@@ -82,6 +84,8 @@ same 'an empty folder of bad plans' 'FAILED: bad: no case' "$(failures nobad)"
 
 with_bad good
 with_good good
+put good/good/laid.yaml 'echo hello'
+put good/good/laid.check 'goodbye'
 put good/good/mute.yaml 'echo hello'
 put good/good/vague.yaml 'echo hello'
 put good/good/vague.expected '# nothing'
@@ -103,6 +107,7 @@ put good/good/unproven.expected 'files unprovable'
 put good/good/lost.stdout 'x'
 same 'good plans that are not right' 'FAILED: good/lost.stdout belongs to no case
 FAILED: crash: build crashed, status 139
+FAILED: laid: what check prints
 FAILED: mute: neither mute.stdout nor anything in mute.expected
 FAILED: other: stdout
 FAILED: other: files
