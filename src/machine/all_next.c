@@ -37,7 +37,8 @@ static meaning chip_meaning(const struct machine *machine, size_t chip)
 	return machine->wiring.advance == ADVANCE_COUNT ? reader->clear : reader->next;
 }
 
-// The state bits that should run inside a block: the lowest, those on the chip's lowest address pins, and others to fill up.
+// The state bits that should run inside a block: the lowest, those on the chip's lowest address pins, and others to
+// fill up.
 static uint32_t block_mask(const struct chip_reader *reader, uint32_t state_mask)
 {
 	uint32_t mask = ((1u << LINE_BITS) - 1) & state_mask;

@@ -8,8 +8,8 @@
 #define STATE_BYTES ((LIMIT_STATE_BITS + 7) / 8)
 #define LANE_BYTES (LIMIT_DATA_PINS / 8)
 
-// A chip. The byte address of a state is the OR of address[k][byte k of the state]; what byte k of the data there means is in
-// next[k], levels[k] and clear[k], again to be ORed.
+// A chip. The byte address of a state is the OR of address[k][byte k of the state]; what byte k of the data there means
+// is in next[k], levels[k] and clear[k], again to be ORed.
 struct chip_reader {
 	const uint8_t *bytes;
 	unsigned width;                             // bytes at an address: 1 or 2

@@ -112,8 +112,8 @@ static uint32_t leaving_bit(const struct decoder *decoder, uint32_t code, uint32
 	return 0;
 }
 
-// Whether one asserted code on the way, with its neighbours, shows that the signal may flicker. Neighbours suffice: along any
-// path between an asserted and an unasserted code there is a step from one to the other.
+// Whether one asserted code on the way, with its neighbours, shows that the signal may flicker. Neighbours suffice:
+// along any path between an asserted and an unasserted code there is a step from one to the other.
 static bool code_flickers(const struct crossing *crossing, uint32_t code, uint32_t *between)
 {
 	uint32_t flipped = code ^ crossing->from, leaving = 0;

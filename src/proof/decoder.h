@@ -21,7 +21,8 @@ struct decoders {
 	size_t count;
 };
 
-// Decoders for every FROM_FIELD signal of a plan, known where the plan lists the codes. In the arena; NULL when memory is out.
+// Decoders for every FROM_FIELD signal of a plan, known where the plan lists the codes. In the arena; NULL when memory
+// is out.
 struct decoders *decoders_create(struct arena *arena, const struct plan *plan);
 
 // Reads the codes that are not known yet: those of the states (one for each of `cells` cells) at which expected[] says

@@ -90,8 +90,8 @@ static bool same_pins(const struct finder *finder, uint64_t left, uint64_t right
 	return ((left ^ right) & finder->compared) == 0;
 }
 
-// border[i]: how many cells at the start of the frame agree with as many that end at cell i, less than all: the failure function
-// of Knuth, Morris and Pratt (1977).
+// border[i]: how many cells at the start of the frame agree with as many that end at cell i, less than all: the failure
+// function of Knuth, Morris and Pratt (1977).
 static bool find_borders(struct finder *finder)
 {
 	const uint32_t cells = finder->timeline->cell_count;

@@ -1,5 +1,5 @@
-// Glitches: cell edges at which the code of a decoded field changes in more than one bit, so that the decoder may see a code in
-// between and flicker.
+// Glitches: cell edges at which the code of a decoded field changes in more than one bit, so that the decoder may see a
+// code in between and flicker.
 #include <string.h>
 
 #include "base/arena.h"
@@ -36,8 +36,8 @@ static bool memo_flickers(struct search *search, uint32_t from, uint32_t to, uin
 	return memo->flickers;
 }
 
-// The state that the counter shows for an instant on its way from one cell to the next, with an async clear; the state before the
-// edge if there is none.
+// The state that the counter shows for an instant on its way from one cell to the next, with an async clear; the state
+// before the edge if there is none.
 static uint32_t passing_state(const struct trial *trial, uint32_t from, uint32_t to)
 {
 	if (trial->wiring.advance != ADVANCE_COUNT || trial->wiring.clear != CLEAR_ASYNC)

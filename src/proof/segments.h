@@ -1,6 +1,6 @@
-// Segments: parts of chains whose states share one account of where they lead. A state's record names its segment and its place in it: the
-// state of place p leads to place p + 1. States of other chains that join a segment count back from where they join, into
-// negative places. Internal to the search for ways.
+// Segments: parts of chains whose states share one account of where they lead. A state's record names its segment and
+// its place in it: the state of place p leads to place p + 1. States of other chains that join a segment count back
+// from where they join, into negative places. Internal to the search for ways.
 #ifndef SCANLATCH_PROOF_SEGMENTS_H
 #define SCANLATCH_PROOF_SEGMENTS_H
 

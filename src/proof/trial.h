@@ -74,8 +74,8 @@ bool proof_fails(struct trial *trial, enum proof_kind kind, struct counterexampl
 // A proof that cannot be judged, for a reason in words, fails. Cannot fail.
 void proof_not_judged(struct trial *trial, enum proof_kind kind, const char *reason);
 
-// A counterexample at a cell, without words yet: the pin of a signal there, or a bit of the state in which the cell's successor
-// finds itself. They name the state whose row was read and the byte that stands there. Cannot fail.
+// A counterexample at a cell, without words yet: the pin of a signal there, or a bit of the state in which the cell's
+// successor finds itself. They name the state whose row was read and the byte that stands there. Cannot fail.
 struct counterexample blame_pin(const struct trial *trial, uint32_t cell, size_t signal);
 struct counterexample blame_next(const struct trial *trial, uint32_t cell, uint32_t wrong_bits);
 // The bytes of all chips that carry the next state (or clear) of a state, in words: "U7 0x01A3: 0x5B and U8 0x01A3: 0x00".

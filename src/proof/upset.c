@@ -73,8 +73,9 @@ static void upset_state(const struct trial *trial, struct tally *tally, uint32_t
 	tally->result->upsets += trial->wiring.state_bits;
 }
 
-// All states of the frame: in their order around it, or, where it fills much of the state space, in ascending order, in which
-// the neighbours that differ in one bit are read as so many streams. Passing states have the way of another state.
+// All states of the frame: in their order around it, or, where it fills much of the state space, in ascending order, in
+// which the neighbours that differ in one bit are read as so many streams. Passing states have the way of another
+// state.
 static void upset_frame(const struct trial *trial, struct tally *tally)
 {
 	const uint32_t period = trial->lap.return_cells, states = (uint32_t)1 << trial->wiring.state_bits;

@@ -1,9 +1,9 @@
-// Chains of unvisited states are followed until they meet a state whose way is known. The cost is the chase itself: each step waits
-// for a far read. So every state is read and marked in one visit, and several lanes follow chains of their own in turn, while the
-// reads of the others are under way. The way back over a chain, which fills in the ways, goes over a short list of the states
-// visited last. Where a chain outgrows the list, its part so far becomes a closed segment: its records keep their place in the
-// segment, and only the segment learns where it leads. Where a chain meets another that is still being followed, its states
-// take places in that one's segment.
+// Chains of unvisited states are followed until they meet a state whose way is known. The cost is the chase itself:
+// each step waits for a far read. So every state is read and marked in one visit, and several lanes follow chains of
+// their own in turn, while the reads of the others are under way. The way back over a chain, which fills in the ways,
+// goes over a short list of the states visited last. Where a chain outgrows the list, its part so far becomes a closed
+// segment: its records keep their place in the segment, and only the segment learns where it leads. Where a chain meets
+// another that is still being followed, its states take places in that one's segment.
 #include "proof/ways.h"
 
 #include "base/arena.h"
@@ -40,8 +40,9 @@ static void fetch(const struct way_record *record)
 	__builtin_prefetch(record, 1, 3);
 }
 
-// A segment that others refer to keeps its number when its chain ends. Chains that cross each other over and over could use up the
-// numbers; when those left are all that closed segments may need, one lane goes on alone, which nothing can cross.
+// A segment that others refer to keeps its number when its chain ends. Chains that cross each other over and over could
+// use up the numbers; when those left are all that closed segments may need, one lane goes on alone, which nothing can
+// cross.
 static bool is_crowded(const struct chase *chase)
 {
 	return chase->segments.capacity - chase->segments.count < chase->states / SEGMENT_STATES + 2 * LANES;
@@ -60,8 +61,8 @@ static void start_chain(struct chase *chase, struct lane *lane, uint32_t state)
 		lane->segment = segment_open(&chase->segments, lane_number(chase, lane), NO_SEGMENT, 0);
 }
 
-// Starts a chain in the block; false if the block has no unvisited state left. Most spare states are one cell from home: they
-// need no chain.
+// Starts a chain in the block; false if the block has no unvisited state left. Most spare states are one cell from
+// home: they need no chain.
 static bool start_in_block(struct chase *chase, struct lane *lane)
 {
 	struct way_record *records = chase->records;
@@ -165,8 +166,8 @@ static struct way_record settled_record(const struct outcome *outcome, uint32_t 
 	return (struct way_record){.subject = outcome->target, .way = WAY_SEGMENT | place};
 }
 
-// Settles the chain: the states of the segment under way one by one, the closed segments as such. The number of the one under way
-// serves the next chain, unless others refer to it.
+// Settles the chain: the states of the segment under way one by one, the closed segments as such. The number of the one
+// under way serves the next chain, unless others refer to it.
 static void lane_finish(struct chase *chase, struct lane *lane)
 {
 	struct segments *segments = &chase->segments;
@@ -235,7 +236,8 @@ static void mark_passing(struct chase *chase, const struct machine *machine)
 			chase->records[state].way = WAY_PASSING;
 }
 
-// Passing states are on no chain. Whatever loop a counter is in, it comes by 0, which is settled by definition: 0 is in the frame.
+// Passing states are on no chain. Whatever loop a counter is in, it comes by 0, which is settled by definition: 0 is in
+// the frame.
 static void finish_passing(struct chase *chase)
 {
 	for (uint32_t state = 1; state < chase->states; state++)

@@ -55,7 +55,8 @@ static void wire_address(struct board *board, struct chip *chip, bool scrambled,
 	}
 }
 
-// Word bits 0 … state_bits - 1 are the next state (for a counter bit 0 alone is clear); each goes on some data pin of some chip.
+// Word bits 0 … state_bits - 1 are the next state (for a counter bit 0 alone is clear); each goes on some data pin of
+// some chip.
 static void board_init(struct board *board, unsigned state_bits, unsigned data_pins, bool scrambled, uint64_t *seed)
 {
 	*board = (struct board){.spare_pins = scrambled ? 2 : 0};

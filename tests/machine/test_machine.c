@@ -56,8 +56,8 @@ static void straight_rows(void **test)
 	arena_destroy(arena);
 }
 
-// Two chips, each with wires in an order of its own. Chip 0: A0 is state 1, A1 state 0; D7 is next 0, D0 signal 5. Chip 1: A0 low, A1
-// state 1, A2 state 0; D3 is next 1, D4 signal 2.
+// Two chips, each with wires in an order of its own. Chip 0: A0 is state 1, A1 state 0; D7 is next 0, D0 signal 5. Chip
+// 1: A0 low, A1 state 1, A2 state 0; D3 is next 1, D4 signal 2.
 static void scrambled_rows(void **test)
 {
 	(void)test;
@@ -120,7 +120,8 @@ static void wide_chip(void **test)
 	arena_destroy(arena);
 }
 
-// A0 is the state, A1 tied high, A2 a bank jumper, A3 open and so low: bank 0 reads addresses 2 and 3, bank 1 reads 6 and 7.
+// A0 is the state, A1 tied high, A2 a bank jumper, A3 open and so low: bank 0 reads addresses 2 and 3, bank 1 reads 6
+// and 7.
 static void pins_that_no_state_drives(void **test)
 {
 	(void)test;

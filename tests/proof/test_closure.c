@@ -227,8 +227,8 @@ static void line_ticks(void **test)
 	by_hand_destroy(hand);
 }
 
-// Lead 1: the pin shows one cell early what the next cell is to be. Cell 1 is long, so the pin of cell 0 is asserted, which row 1
-// stores.
+// Lead 1: the pin shows one cell early what the next cell is to be. Cell 1 is long, so the pin of cell 0 is asserted,
+// which row 1 stores.
 static void leading_stretch(void **test)
 {
 	(void)test;

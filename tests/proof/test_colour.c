@@ -1,5 +1,5 @@
-// Subcarrier cycles against published figures. Sources: S170 = SMPTE 170M-2004; B470 = Rec. ITU-R BT.470-6 (1998); E3280 = EBU Tech.
-// 3280-E (1995); S244 = SMPTE 244M-2003. Lines of 912 and 1136 ticks: common practice, no standard.
+// Subcarrier cycles against published figures. Sources: S170 = SMPTE 170M-2004; B470 = Rec. ITU-R BT.470-6 (1998);
+// E3280 = EBU Tech. 3280-E (1995); S244 = SMPTE 244M-2003. Lines of 912 and 1136 ticks: common practice, no standard.
 #include <stdarg.h>
 #include <stddef.h>
 #include <setjmp.h>
@@ -119,8 +119,8 @@ static void lines_of_1136_ticks(void **test)
 	by_hand_destroy(hand);
 }
 
-// E3280 1.2: 709 379 samples a frame, lines 313 and 625 two longer than the others' 1135. So a frame has 625 × (1135/4 + 1/625)
-// cycles (B470 2.11b), 709379/4, and four frames are a whole number.
+// E3280 1.2: 709 379 samples a frame, lines 313 and 625 two longer than the others' 1135. So a frame has 625 × (1135/4
+// + 1/625) cycles (B470 2.11b), 709379/4, and four frames are a whole number.
 static void frame_of_625_lines(void **test)
 {
 	(void)test;

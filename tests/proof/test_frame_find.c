@@ -67,8 +67,8 @@ static void holds_decide(void **test)
 	}
 }
 
-// No turn fits: the one that agrees longest is taken. The row of cell 2 has lost the sync of cell 3; from any other turn the pins differ
-// sooner. State 0, where the walk begins, is cell 2.
+// No turn fits: the one that agrees longest is taken. The row of cell 2 has lost the sync of cell 3; from any other
+// turn the pins differ sooner. State 0, where the walk begins, is cell 2.
 static void longest_agreement(void **test)
 {
 	(void)test;

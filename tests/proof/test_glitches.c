@@ -116,7 +116,8 @@ static bool flickers_by_enumeration(uint64_t set, uint32_t from, uint32_t to)
 	return false;
 }
 
-// What is given as between is in between and wrong: unlike the equal ends, or like the old one after the new level was there.
+// What is given as between is in between and wrong: unlike the equal ends, or like the old one after the new level was
+// there.
 static bool between_is_wrong(uint64_t set, uint32_t from, uint32_t to, uint32_t between)
 {
 	uint32_t changing = from ^ to, flipped = from ^ between;
@@ -204,7 +205,8 @@ static void quiet_loop(void **test)
 	by_hand_destroy(hand);
 }
 
-// Codes 0, 1, 2, 3, asserted 1 and 2. Into cell 2, 01 → 10, it may fall; into cell 0, 11 → 00, it may rise: 3 lines, 6 edges.
+// Codes 0, 1, 2, 3, asserted 1 and 2. Into cell 2, 01 → 10, it may fall; into cell 0, 11 → 00, it may rise: 3 lines, 6
+// edges.
 static void disturbed_loop(void **test)
 {
 	(void)test;
@@ -230,9 +232,9 @@ static void disturbed_loop(void **test)
 	by_hand_destroy(hand);
 }
 
-// A counter of 5 cells, states 0 to 4; the gate is asserted at codes 0 and 2 of the upper two bits: cells 0, 1 and 4. Its
-// passing state 5 has code 2 as well, the way down from 10 to 00 is one bit. With 6 cells, the passing state is 6, code 3: it
-// is reached through one bit (5 → 6: 10 → 11) and left through two, with both ends asserted.
+// A counter of 5 cells, states 0 to 4; the gate is asserted at codes 0 and 2 of the upper two bits: cells 0, 1 and 4.
+// Its passing state 5 has code 2 as well, the way down from 10 to 00 is one bit. With 6 cells, the passing state is 6,
+// code 3: it is reached through one bit (5 → 6: 10 → 11) and left through two, with both ends asserted.
 static struct by_hand *passing_counter(uint32_t cells, const uint32_t *codes, size_t count)
 {
 	struct by_hand *hand = by_hand_create(3);
@@ -309,8 +311,8 @@ static void on_the_way_to_the_passing_state(void **test)
 	by_hand_destroy(hand);
 }
 
-// Edges that look alike in their lower bits are judged each for itself. Asserted at 0x1001 alone; codes 3, 0, 0x1003, 0 and around:
-// 3 → 0 passes 1 and 2; 0 → 0x1003 and 0x1003 → 0 may pass 0x1001; 0 → 3 passes 1 and 2.
+// Edges that look alike in their lower bits are judged each for itself. Asserted at 0x1001 alone; codes 3, 0, 0x1003, 0
+// and around: 3 → 0 passes 1 and 2; 0 → 0x1003 and 0x1003 → 0 may pass 0x1001; 0 → 3 passes 1 and 2.
 static void edges_alike(void **test)
 {
 	(void)test;

@@ -287,8 +287,8 @@ static void long_chains(void **test)
 	compare_chain(100, 64000, 7);
 }
 
-// Every state leads `step` states on, but 0 is the frame. With an odd step all states lead home, from -k × step in k cells; an even one
-// leaves loops of odd states. Chains cross each other in step, more often than there is room for.
+// Every state leads `step` states on, but 0 is the frame. With an odd step all states lead home, from -k × step in k
+// cells; an even one leaves loops of odd states. Chains cross each other in step, more often than there is room for.
 static void compare_steps(uint32_t step, uint32_t lost)
 {
 	enum { STATE_BITS = 14, STATES = 1 << STATE_BITS };

@@ -80,8 +80,8 @@ static void flips_in_tables(void **test)
 	flips_in_a_table(OUTPUTS_DIRECT);
 }
 
-// Spare rows are the last cell's row over again. If the row before the last leads to one of them instead, the board makes the same
-// raster, cell by cell: nothing is wrong with it, and nothing is found.
+// Spare rows are the last cell's row over again. If the row before the last leads to one of them instead, the board
+// makes the same raster, cell by cell: nothing is wrong with it, and nothing is found.
 static void a_spare_state_as_good_as_the_last(void **test)
 {
 	(void)test;

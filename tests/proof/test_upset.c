@@ -103,8 +103,9 @@ static void repeating_frame(void **test)
 	by_hand_destroy(hand);
 }
 
-// An async counter of 5 cells; 5, 6 and 7 fall to 0. A flip to one of them is a fall to cell 0: bit 0 of 4, bit 2 of 1, 2 and 3.
-// Slips of bit 0, 1, 2: 0: 1 2 1 (4 is one behind); 1: 1 2 1 (to 5); 2: 1 2 2 (to 6); 3: 1 2 2 (to 7); 4: 1 (to 5) 1 (to 6) 1.
+// An async counter of 5 cells; 5, 6 and 7 fall to 0. A flip to one of them is a fall to cell 0: bit 0 of 4, bit 2 of 1,
+// 2 and 3. Slips of bit 0, 1, 2: 0: 1 2 1 (4 is one behind); 1: 1 2 1 (to 5); 2: 1 2 2 (to 6); 3: 1 2 2 (to 7); 4: 1
+// (to 5) 1 (to 6) 1.
 static void passing_states(void **test)
 {
 	(void)test;

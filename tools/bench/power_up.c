@@ -1,5 +1,5 @@
-// How long the power-up proof takes over 2^24 states, from the images of four chips, against one plain walk through an array of
-// that size whose every step depends on the one before. Prints the ratios; all in one run, on one core.
+// How long the power-up proof takes over 2^24 states, from the images of four chips, against one plain walk through an
+// array of that size whose every step depends on the one before. Prints the ratios; all in one run, on one core.
 #include <inttypes.h>
 #include <stdio.h>
 #include <stdlib.h>
@@ -96,8 +96,8 @@ static void shuffle(unsigned *values, unsigned count, uint64_t *seed)
 	}
 }
 
-// Straight: A0… take state.0…, and the first three chips the next bits in order. Scrambled: any state bit on any address pin, another
-// order for each chip, and the next bits on any data pin of any chip.
+// Straight: A0… take state.0…, and the first three chips the next bits in order. Scrambled: any state bit on any
+// address pin, another order for each chip, and the next bits on any data pin of any chip.
 static void board_init(struct board *board, bool scrambled, uint64_t *seed)
 {
 	unsigned data[CHIPS * 8], address[STATE_BITS];
