@@ -108,6 +108,9 @@ ends 'bad plan' 2 check bad.yaml
 same 'bad plan: nothing on standard output' '' "$stdout"
 ends 'plan without states' 2 check short.yaml
 ends 'missing plan' 3 check none.yaml
+# A file that opens and then refuses to be read, for the superuser too (Linux).
+ends 'unreadable plan' 3 check /proc/self/mem
+same 'unreadable plan: says why' '/proc/self/mem: error: cannot read a plan: Input/output error [file-unreadable]' "$stderr"
 ends 'out of step' 1 check out-of-step.yaml
 holds 'out of step: says so' grep -q '^FAIL  colour ' stdout
 ends 'slow memory' 0 check slow.yaml
