@@ -99,6 +99,8 @@ static bool copy_binary(const struct chip *chip, struct place place, const void 
 	}
 	diagnose(diagnostics, RULE_IMAGE_SIZE, place, "%zu bytes, but chip \"%s\" (%s) has %zu", length, chip->label, chip->part->name,
 	         image->length);
+	if (length > 0 && *(const char *)bytes == ':')
+		diagnose_hint(diagnostics, "it begins as Intel HEX does, but its first record has other characters than digits");
 	return false;
 }
 

@@ -5,7 +5,7 @@ set -u
 
 work=$(mktemp -d) || exit 1
 trap 'rm -rf "$work"' EXIT
-cp tests/good/{lead,scrambled,bank,wide-part,speed-notice}.yaml plans/lock-gate-sign.yaml "$work"
+cp tests/good/{unused-line,codes-auto,lead,scrambled,bank,wide-part,speed-notice}.yaml plans/lock-gate-sign.yaml "$work"
 cp tests/bad/unknown-key.yaml "$work/bad.yaml"
 cd "$work" || exit 1
 head -c 32768 /dev/zero >blank32
@@ -66,6 +66,19 @@ prove 0 lead.yaml rom0=segment.hex
 printf ':\xe6\xf7\xe0' >colon.bin
 prove 1 lead.yaml rom0=colon.bin
 
+# Images that another maker chose other states for: the plan leaves them free. 0 2 1 3, then 2 0 1 3 with a start of its own.
+printf '\xfe\xff\xfd\xf8' >states.bin
+prove 0 unused-line.yaml rom0=states.bin
+holds 'other states: home' grep -q 'home in state 0x0 after 4 us$' stdout
+printf '\xfd\xff\xfc\xfa' >start.bin
+prove 0 unused-line.yaml rom0=start.bin
+holds 'another start: home' grep -q 'home in state 0x2 after 4 us$' stdout
+# Codes that another maker chose, states as in codes-auto.yaml but for bit 2 turned over: 4 6 7 2 3 0.
+printf '\xfc\xf8\xfb\xf8\xfe\xf8\xff\xfa' >codes.bin
+prove 0 codes-auto.yaml rom0=codes.bin
+holds 'other codes: sync' grep -q 'sync is asserted in code of field code: 3$' stdout
+holds 'other codes: blank' grep -q 'blank is asserted in codes of field code: 2 3$' stdout
+
 # What cannot be images of the chip.
 refuses image-format 'broken.hex:6:1: error: Intel HEX: a record that does not have the length it says' lead.yaml rom0=broken.hex
 printf ':04000000EDE6F7E052\n:00000001FF\n' | tr F f | sed 's/52/53/' >sum.hex
@@ -76,6 +89,10 @@ head -c 20 images/lead.rom0.hex >end.hex
 refuses image-format 'end.hex: error: Intel HEX: no end record' lead.yaml rom0=end.hex
 head -c 3 images/lead.rom0.bin >small.bin
 refuses image-size 'small.bin: error: 3 bytes, but chip "rom0" (BUOYROM) has 4' lead.yaml rom0=small.bin
+printf ':0400000OEDE6F7E052\n:00000001FF\n' >letter.hex
+refuses image-size 'letter.hex: error: 32 bytes, but chip "rom0" (BUOYROM) has 4' lead.yaml rom0=letter.hex
+holds 'a letter in the first record: hint' \
+	grep -Fqx '  hint: it begins as Intel HEX does, but its first record has other characters than digits' stderr
 : >empty.bin
 refuses image-size 'empty.bin: error: 0 bytes, but chip "rom0" (BUOYROM) has 4' lead.yaml rom0=empty.bin
 refuses image-size 'images/lock-gate-sign.U4.bin: error: 8192 bytes, but chip "U3" (28C256) has 32768' \
