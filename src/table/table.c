@@ -1,6 +1,7 @@
 #include "table/table.h"
 
 #include "base/arena.h"
+#include "table/guard.h"
 #include "table/solve.h"
 
 static bool report_memory(const struct plan *plan, struct diagnostics *diagnostics)
@@ -16,7 +17,9 @@ static bool solve_period(struct table *table, const struct timeline *folded, str
 		return faults_memory(faults);
 	if (table->wiring.advance == ADVANCE_COUNT)
 		return count_states(&constraints, scratch, table->state_of_cell, faults);
-	return solve_states(&constraints, scratch, table->state_of_cell, faults);
+	if (!solve_states(&constraints, scratch, table->state_of_cell, faults))
+		return false;
+	return guard_last_state(&constraints, scratch, table->state_of_cell) || faults_memory(faults);
 }
 
 // The timeline with the holds of all laps of the table's period in each. False if they contradict each other.
