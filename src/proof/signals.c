@@ -31,12 +31,16 @@ static const char *pin_words(const struct trial *trial, uint32_t cell, size_t in
 	                    level_word(high), signal->auto_codes ? " elsewhere in the frame" : "");
 }
 
-// The first cell with a wrong pin; UINT32_MAX if there is none.
+// The first cell with a wrong pin; UINT32_MAX if there is none. The latched pins of cell 0 come from where the lap ended: if it did not end well
+// they are judged last, since what went wrong before says more.
 static uint32_t first_wrong_pin(const struct trial *trial)
 {
-	for (uint32_t cell = 0; cell < trial->timeline->cell_count; cell++)
+	const uint32_t cells = trial->timeline->cell_count, first = trial->lap.closed ? 0 : 1;
+	for (uint32_t index = 0; index < cells; index++) {
+		const uint32_t cell = (first + index) % cells;
 		if (trial->lap.pins[cell] != trial->expected[cell])
 			return cell;
+	}
 	return UINT32_MAX;
 }
 

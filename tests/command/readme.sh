@@ -1,0 +1,65 @@
+#!/bin/bash
+# What the README shows is what the program prints: runs the commands of its tour and compares their output, up to lines of "...".
+set -u
+. "$(dirname "$0")/../report.sh"
+
+readme=$(realpath "$(dirname "$0")/../../README.md")
+plans=$(realpath "$(dirname "$0")/../../plans")
+work=$(mktemp -d) || exit 1
+trap 'rm -rf "$work"' EXIT
+cp -r "$plans" "$work/plans"
+cd "$work" || exit 1
+scanlatch() { "$SCANLATCH" "$@"; }
+
+# The n-th block of the README that begins with a command.
+block() {
+	awk -v wanted="$1" '/^```$/ { inside = !inside; first = inside; next }
+		inside && first { shown = /^\$ scanlatch/; count += shown; first = 0 }
+		inside && shown && count == wanted { print }' "$readme"
+}
+
+# The command of a block, on one line, and the output that follows it.
+command_of() { block "$1" | awk 'NR == 1 || more { print; more = /\\$/; next } { exit }' | sed 's/^\$ //; s/\\$//' | tr '\n' ' '; }
+output_of() { block "$1" | awk 'NR == 1 || more { more = /\\$/; next } { print }'; }
+
+# Compares the output of a block's command with the README; a line "..." stands for any lines.
+compare() {
+	eval "$(command_of "$1")" >found 2>&1
+	output_of "$1" >wanted
+	/usr/bin/python3 - wanted found <<'PYTHON'
+import sys
+wanted = open(sys.argv[1]).read().splitlines()
+found = open(sys.argv[2]).read().splitlines()
+at, skipping = 0, False
+for line in wanted:
+    if line == "...":
+        skipping = True
+        continue
+    while skipping and at < len(found) and found[at] != line:
+        at += 1
+    skipping = False
+    if at >= len(found) or found[at] != line:
+        sys.exit("README: %r, found %r" % (line, found[at] if at < len(found) else None))
+    at += 1
+if not skipping and at < len(found):
+    sys.exit("README leaves out %r" % found[at])
+sys.exit(0 if wanted else "the README shows nothing")
+PYTHON
+}
+
+holds "check shows what the README shows" compare 1
+holds "build shows what the README shows" compare 2
+
+# "Somebody has patched a byte of a chip": one bit of byte 0x1234.
+/usr/bin/python3 - <<'PYTHON'
+data = bytearray(open("images/tide-board-60.rom0.bin", "rb").read())
+data[0x1234] ^= 0x10
+open("rom0-readback.bin", "wb").write(data)
+PYTHON
+holds "prove shows what the README shows" compare 3
+
+sed -e 's/time: 2.51 us/time: 2.51/' -e '/^  border:/,/like:/ s/like: picture/like: pictur/' plans/tide-board-60.yaml >wrong.yaml
+holds "mistakes look as the README shows" compare 4
+same "the README shows four commands" "$(block 5)" ""
+
+finish
