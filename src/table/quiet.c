@@ -6,8 +6,8 @@
 #include "table/relax.h"
 
 #define AHEAD_CODES 1024                            // at most so many codes are looked at ahead
-#define AHEAD_BYTES ((size_t)1 << 20)               // of cost vectors in one window
-#define AHEAD_WORK ((uint64_t)1 << 27)              // bytes of cost vectors in the whole walk
+#define AHEAD_BYTES ((size_t)1 << 18)               // of cost vectors in one window
+#define AHEAD_WORK ((uint64_t)1 << 26)              // bytes of cost vectors, and codes tried, in all walks
 #define RUN_STEPS 16                                // vectors that one run may use; beyond, costs count as settled
 #define REPLANS 256
 

@@ -232,6 +232,39 @@ static void test_holds_cut_field(void **state)
 	bench_destroy(bench);
 }
 
+// A field of 2,048 codes: 600 cells need a code each, though by their number 150 codes would have states enough.
+static void test_wide_field(void **state)
+{
+	(void)state;
+	struct bench *bench = bench_create(13, 4700);
+	const size_t select = bench_field(bench, "select", 12, 2), at = bench_field(bench, "at", 1, 0);
+	const size_t load = bench_coded(bench, "load", select, NULL, 0);
+	bench_region(bench, "picture", 600, SIGNAL(load));
+	bench_hold(bench, at, 0, 0);
+	bench_region(bench, "porch", 4000, 0);
+	const struct table *table = bench_table(bench);
+	assert_valid(bench);
+	assert_int_equal(table->code_counts[load], 600);
+	bench_destroy(bench);
+}
+
+// Forty cells hold the first bit of a field at 0, which leaves them 32 states: no codes help, and there are too many to try them all.
+static void test_half_too_small(void **state)
+{
+	(void)state;
+	struct bench *bench = bench_create(6, 64);
+	const size_t select = bench_field(bench, "select", 5, 1), first = bench_field(bench, "first", 5, 5);
+	const size_t load = bench_coded(bench, "load", select, NULL, 0);
+	bench_region(bench, "a", 20, SIGNAL(load));
+	bench_hold(bench, first, 0, 0);
+	bench_region(bench, "b", 20, 0);
+	bench_hold(bench, first, 0, 0);
+	assert_null(bench_table(bench));
+	assert_int_equal(diagnostics_error_count(bench->diagnostics), 1);
+	assert_int_equal(diagnostics_rule(bench->diagnostics, 0), RULE_CODES_SHORT);
+	bench_destroy(bench);
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
@@ -247,6 +280,8 @@ int main(void)
 		cmocka_unit_test(test_code_held_twice),
 		cmocka_unit_test(test_shared_all_the_same),
 		cmocka_unit_test(test_holds_cut_field),
+		cmocka_unit_test(test_wide_field),
+		cmocka_unit_test(test_half_too_small),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -165,6 +165,53 @@ static void test_wide_field(void **state)
 	bench_destroy(bench);
 }
 
+// Nothing lies a bit away from either code of "on", so the second follows when the first is used up.
+static void test_wide_field_jumps(void **state)
+{
+	(void)state;
+	struct bench *bench = bench_create(12, 16);
+	const size_t wide = bench_field(bench, "wide", 11, 1);
+	const size_t on = bench_coded(bench, "on", wide, (const uint32_t[]){0, 3}, 2);
+	bench_region(bench, "on", 4, SIGNAL(on));
+	bench_region(bench, "off", 3, 0);
+	const struct table *table = bench_table(bench);
+	assert_codes_run(table, &bench->fields[wide], (const uint32_t[]){0, 0, 3, 3, 2, 2, 6}, 7);
+	assert_valid(bench);
+	bench_destroy(bench);
+}
+
+// More changes than the look ahead takes in at once: a field of 10 bits that changes its pattern every few cells. Codes with an odd number
+// of ones assert, so that every change of one bit changes the pattern.
+static void test_many_runs(void **state)
+{
+	(void)state;
+	struct bench *bench = bench_create(13, 600);
+	const size_t wide = bench_field(bench, "wide", 12, 3);
+	uint32_t codes[512], count = 0, number = 5;
+	for (uint32_t code = 0; code < 1024; code++) {
+		uint32_t parity = code;
+		for (unsigned shift = 8; shift > 0; shift /= 2)
+			parity ^= parity >> shift;
+		if ((parity & 1) != 0)
+			codes[count++] = code;
+	}
+	assert_int_equal(count, 512);
+	bench_coded(bench, "on", wide, codes, 512);
+	bench_region(bench, "all", 600, 0);
+	for (uint32_t cell = 0, left = 0, on = 0; cell < 600; cell++, left--) {
+		if (left == 0) {
+			number = number * 1664525u + 1013904223u;
+			left = 1 + (number >> 30);
+			on = !on;
+		}
+		bench->laid.asserted[cell] = on;
+	}
+	assert_non_null(bench_table(bench));
+	assert_valid(bench);
+	assert_int_equal(count_jumps(bench->table, &bench->fields[wide]), 0);
+	bench_destroy(bench);
+}
+
 #define FIELD_BITS 3
 #define CODES (1u << FIELD_BITS)
 
@@ -237,6 +284,8 @@ int main(void)
 		cmocka_unit_test(test_held_cells_choose),
 		cmocka_unit_test(test_two_decoders),
 		cmocka_unit_test(test_wide_field),
+		cmocka_unit_test(test_wide_field_jumps),
+		cmocka_unit_test(test_many_runs),
 		cmocka_unit_test(test_fewest_jumps),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
