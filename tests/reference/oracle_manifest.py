@@ -1,0 +1,187 @@
+"""Checks NAME.manifest.json against page 3.1: names, sums, start, frame, and the figures of proofs worked out here."""
+
+import json
+import os
+import zlib
+from fractions import Fraction
+
+from oracle_chips import Fault, bank_count
+from oracle_machine import codes_seen, glitch_edges, multi_bit_edges, upset
+from oracle_plan import quantity_of
+
+PROOFS = ["closure", "signals", "colour", "power-up", "upset", "glitches", "speed", "sweep"]
+MUSTS = {"closure", "signals", "colour", "power-up", "sweep"}
+
+
+def expect(name, wanted, found):
+	if wanted != found:
+		raise Fault(f"manifest: {name}: expected {wanted!r}, found {found!r}")
+
+
+def close(name, wanted, found):
+	"""A rounded value may be off by half a unit of its sixth decimal."""
+	if abs(Fraction(found) - wanted) > Fraction(1, 10**6) + abs(wanted) / 10**12:
+		raise Fault(f"manifest: {name}: expected {float(wanted)}, found {found}")
+
+
+def crc32(data):
+	return f"{zlib.crc32(data):08x}"
+
+
+def load(path):
+	def pairs(items):
+		names = [name for name, _ in items]
+		expect("keys of an object", len(set(names)), len(names))
+		return dict(items)
+	with open(path, encoding="utf-8") as file:
+		return json.load(file, object_pairs_hook=pairs)
+
+
+def check_head(plan, plan_path, manifest):
+	expect("keys", ["format", "name", "plan", "chips", "start", "frame", "proofs"], list(manifest))
+	expect("format", 1, manifest["format"])
+	expect("name", plan.name, manifest["name"])
+	with open(plan_path, "rb") as file:
+		expect("plan", {"file": os.path.basename(plan_path), "crc32": crc32(file.read())}, manifest["plan"])
+
+
+def check_chips(plan, chips, folder, formats, manifest):
+	expect("number of chips", len(chips), len(manifest["chips"]))
+	for chip, entry in zip(chips, manifest["chips"]):
+		files = [f"{plan.name}.{chip.label}.{kind}" for kind in formats]
+		expect(f"chip {chip.label}", {"label": chip.label, "part": chip.part, "bytes": chip.capacity, "crc32": crc32(chip.image),
+			"sum16": sum(chip.image) % 65536, "files": files}, entry)
+	wanted = sorted(name for entry in manifest["chips"] for name in entry["files"]) + [f"{plan.name}.manifest.json"]
+	expect("files in the folder", sorted(wanted), sorted(os.listdir(folder)))
+
+
+def check_start(chips, machine, manifest):
+	expect("start", [{"bank": bank, "stage": "loop", "state": machine.states[0]} for bank in range(bank_count(chips))],
+		manifest["start"])
+
+
+def check_frame(plan, ticks, frame):
+	rate = plan.clock.master / sum(ticks)
+	expect("keys of frame", ["lines", "cells", "ticks", "rate"], list(frame))
+	expect("frame lines, cells, ticks", (len(plan.lines), plan.cells, str(sum(ticks))),
+		(frame["lines"], frame["cells"], frame["ticks"]))
+	expect("rate", str(rate), frame["rate"]["fraction"])
+	close("rate", rate, frame["rate"]["decimal"])
+
+
+def verdict(proofs, name, wanted):
+	expect(f"{name}: verdict", wanted, proofs[name]["verdict"])
+	return proofs[name]
+
+
+def check_codes(plan, machine, proof):
+	"""Codes listed are given back; codes chosen contain those that are seen, and none that is seen where it must not be."""
+	expect("signals: coded signals", sorted(signal.name for signal in plan.signals if signal.field), sorted(proof["codes"]))
+	for signal in plan.signals:
+		if signal.field is None:
+			continue
+		given = set(proof["codes"][signal.name])
+		if signal.codes is not None:
+			expect(f"signals: codes of {signal.name}", set(signal.codes), given)
+			continue
+		if machine.field_levels(signal, given)[:plan.cells] != [bool(level) for level in plan.pins[signal.name]]:
+			raise Fault(f"manifest: signals: codes {sorted(given)} do not make {signal.name}")
+
+
+def check_power_up(plan, machine, longest, banks, proof):
+	cells, states = longest
+	expect("power-up: states", banks * machine.size, proof["states"])
+	expect("power-up: frame states", len(set(machine.states[:plan.cells])), proof["frame_states"])
+	expect("power-up: longest way", cells, proof["longest_cells"])
+	if cells and proof["longest_state"] not in states:
+		raise Fault(f"manifest: power-up: state {proof['longest_state']:#x} has not the longest way")
+	expect("power-up: lost states", 0, proof["lost_states"])
+
+
+def check_upset(plan, machine, banks, proof):
+	waits, slips = upset(plan, machine)
+	expect("upset: flips", banks * len(waits), proof["upsets"])
+	expect("upset: worst", max(waits), proof["worst_cells"])
+	expect("upset: mean", Fraction(sum(waits), len(waits)), Fraction(proof["mean_cells"]))
+	expect("upset: worst slip", max(slips), proof["worst_slip_cells"])
+	expect("upset: mean slip", Fraction(sum(slips), len(slips)), Fraction(proof["mean_slip_cells"]))
+
+
+def check_colour(plan, lengths, proofs):
+	clock = plan.clock
+	if clock.subcarrier is None:
+		verdict(proofs, "colour", "absent")
+		return
+	proof = verdict(proofs, "colour", "pass")
+	frame = clock.cycles(sum(lengths))
+	expect("colour: cycles of a frame", str(frame), proof["cycles_per_frame"])
+	expect("colour: phase repeats after frames", frame.denominator, proof["repeats_frames"])
+	uniform = len(set(lengths)) == 1
+	expect("colour: all lines alike", uniform, proof["uniform"])
+	if uniform:
+		expect("colour: cycles of a line", str(clock.cycles(lengths[0])), proof["cycles_per_line"])
+		expect("colour: phase repeats after lines", clock.cycles(lengths[0]).denominator, proof["repeats_lines"])
+
+
+def check_glitches(plan, machine, banks, proof):
+	decoded = [signal for signal in plan.signals if signal.field]
+	expect("glitches: verdict where nothing can flicker", proof["verdict"] == "absent", not decoded and not plan.machine.direct)
+	if not decoded:
+		return
+	flickers = {signal.name: banks * glitch_edges(plan, machine, signal, codes_seen(plan, machine, signal)) for signal in decoded}
+	expect("glitches: signals that may flicker", {name: edges for name, edges in flickers.items() if edges},
+		{entry["signal"]: entry["edges"] for entry in proof["disturbed"]})
+	expect("glitches: verdict", "pass" if not any(flickers.values()) else "fail", proof["verdict"])
+	fields = {plan.machine.fields[signal.field] for signal in decoded}
+	expect("glitches: edges with several bits", banks * multi_bit_edges(plan, machine, fields), proof["multi_bit_edges"])
+
+
+def check_sweep(plan, proofs):
+	verdict(proofs, "sweep", "pass" if plan.sweeps else "absent")
+
+
+def seconds(text):
+	return quantity_of(text)[0]
+
+
+def check_speed(plan, ticks, proof):
+	"""What is measured on the plan; delays of parts are the catalogue's."""
+	timing = plan.tree.get("timing") or {}
+	cell = min(ticks) / plan.clock.master
+	share = Fraction(timing.get("share", "1/1"))
+	expect("speed: shortest cell", cell, Fraction(proof["cell_s"]))
+	expect("speed: share", cell * share, Fraction(proof["available_s"]))
+	expect("speed: margin", seconds(timing.get("margin", "0 ns")), Fraction(proof["margin_s"]))
+	holder = "counter" if plan.machine.counted else "latch"
+	if f"{holder} delay" in timing:
+		expect(f"speed: {holder} delay", seconds(timing[f"{holder} delay"]), Fraction(proof["delay_s"]))
+	if f"{holder} setup" in timing and not plan.machine.counted:
+		expect("speed: latch setup", seconds(timing["latch setup"]), Fraction(proof["setup_s"]))
+	chips = plan.tree["chips"]
+	speeds = [chip["speed"] for chip in (chips if isinstance(chips, list) else [chips])]
+	expect("speed: access", max(map(seconds, speeds)), Fraction(proof["access_s"]))
+
+
+def check_manifest(plan, plan_path, folder, chips, formats, found):
+	"""found: what judge() measured on the images: machine, ticks, lengths, longest."""
+	machine, ticks, lengths, longest = found
+	banks = bank_count(chips)
+	manifest = load(os.path.join(folder, f"{plan.name}.manifest.json"))
+	check_head(plan, plan_path, manifest)
+	check_chips(plan, chips, folder, formats, manifest)
+	check_start(chips, machine, manifest)
+	check_frame(plan, ticks, manifest["frame"])
+	proofs = manifest["proofs"]
+	expect("proofs", PROOFS, list(proofs))
+	expect("musts", MUSTS, {name for name, proof in proofs.items() if proof["must"]})
+	expect("closure", (len(plan.lines), plan.cells, str(sum(ticks))),
+		tuple(verdict(proofs, "closure", "pass")[key] for key in ("lines", "cells", "ticks")))
+	signals = verdict(proofs, "signals", "pass")
+	expect("signals: comparisons", banks * plan.cells * len(plan.signals), signals["comparisons"])
+	check_codes(plan, machine, signals)
+	check_colour(plan, lengths, proofs)
+	check_power_up(plan, machine, longest, banks, verdict(proofs, "power-up", "pass"))
+	check_upset(plan, machine, banks, proofs["upset"])
+	check_glitches(plan, machine, banks, proofs["glitches"])
+	check_speed(plan, ticks, proofs["speed"])
+	check_sweep(plan, proofs)
