@@ -50,7 +50,8 @@ build 0 scrambled.yaml rounding.yaml -o two
 listed two scrambled.U{1,2}.{bin,hex} scrambled.manifest.json rounding.rom0.{bin,hex} rounding.manifest.json
 same 'a report for each plan' '2' "$(grep -c '^pass  closure ' stdout)"
 build 2 rounding.yaml rounding.yaml -o clash
-same 'two plans of one name' 'scanlatch build: two plans have the name "rounding" and would write the same files' "$(head -n 1 stderr)"
+same 'two plans of one name' 'scanlatch build: two plans have the name "rounding" and would write the same files' \
+	"$(head -n 1 stderr)"
 build 2 rounding.yaml short.yaml lead.yaml -o clash
 build 3 rounding.yaml none.yaml -o clash
 holds 'nothing written when one plan is bad' test ! -e clash
@@ -70,7 +71,8 @@ build 0 lead.yaml -o deep/er/folder/
 listed deep/er/folder lead.rom0.{bin,hex} lead.manifest.json
 touch -d '2001-02-03 04:05:06' both/*
 build 0 lead.yaml -o both
-same 'kept: all three' $'kept  both/lead.rom0.bin (4 bytes)\nkept  both/lead.rom0.hex (32 bytes)' "$(grep -E '^(kept|wrote).*rom' stdout)"
+same 'kept: all three' $'kept  both/lead.rom0.bin (4 bytes)\nkept  both/lead.rom0.hex (32 bytes)' \
+	"$(grep -E '^(kept|wrote).*rom' stdout)"
 same 'kept: untouched' '2001' "$(stat -c %y both/* | cut -d - -f 1 | sort -u)"
 printf 'XXXX' >both/lead.rom0.bin
 build 0 lead.yaml -o both
@@ -80,7 +82,8 @@ same 'one changed: the others untouched' '2001-02-03 2001-02-03' \
 cmp -s both/lead.rom0.bin bin/lead.rom0.bin
 same 'one changed: mended' 0 $?
 same 'kept in JSON' 'True True True' \
-	"$("$SCANLATCH" build --json lead.yaml -o both | python3 -c 'import json, sys; print(*[file["kept"] for file in json.load(sys.stdin)["files"]])')"
+	"$("$SCANLATCH" build --json lead.yaml -o both |
+		python3 -c 'import json, sys; print(*[file["kept"] for file in json.load(sys.stdin)["files"]])')"
 
 # The same plan gives the same bytes, wherever it is built from.
 build 0 tide-board-60.yaml --listing -o first
@@ -94,7 +97,8 @@ holds 'same images from a file of another name' cmp first/tide-board-60.rom0.bin
 # Proofs that fail.
 build 1 out-of-step.yaml -o failed
 holds 'a must failed: nothing written' test ! -e failed
-same 'a must failed: says so' 'a proof failed: nothing was written (--unproven writes all the same)' "$(tail -n 1 stdout)"
+same 'a must failed: says so' 'a proof failed: nothing was written (--unproven writes all the same)' \
+	"$(tail -n 1 stdout)"
 build 1 out-of-step.yaml -o failed --unproven
 listed failed out-of-step.rom0.{bin,hex} out-of-step.manifest.json
 same '--unproven: says so' 'written though a proof failed, as asked by --unproven' "$(tail -n 1 stdout)"
@@ -144,15 +148,18 @@ cp both/lead.rom0.bin full/tide-board-60.rom0.bin
 before=$(ls -lA --time-style=full-iso full)
 (ulimit -f 200 && exec "$SCANLATCH" build tide-board-60.yaml -o full >stdout 2>stderr </dev/null)
 same 'full: exit status' 3 $?
-same 'full: says which file' 'scanlatch: cannot write full/tide-board-60.rom0.hex: File too large; nothing was written' "$(cat stderr)"
+same 'full: says which file' \
+	'scanlatch: cannot write full/tide-board-60.rom0.hex: File too large; nothing was written' "$(cat stderr)"
 same 'full: what was there before is there, and nothing else' "$before" "$(ls -lA --time-style=full-iso full)"
 
 # Standard output that cannot be written.
-for arguments in 'check lead.yaml' 'check --json lead.yaml' 'build lead.yaml -o both' 'prove lead.yaml both' 'list parts' '--help' '--version' 'check --help'; do
+for arguments in 'check lead.yaml' 'check --json lead.yaml' 'build lead.yaml -o both' 'prove lead.yaml both' 'list parts' \
+	'--help' '--version' 'check --help'; do
 	# shellcheck disable=SC2086 # several words
 	"$SCANLATCH" $arguments >/dev/full 2>stderr
 	same "$arguments, standard output full" 3 $?
-	same "$arguments, standard output full: says so" 'scanlatch: cannot write standard output: No space left on device' "$(tail -n 1 stderr)"
+	same "$arguments, standard output full: says so" 'scanlatch: cannot write standard output: No space left on device' \
+		"$(tail -n 1 stderr)"
 done
 same 'no temporaries anywhere' '' "$(find . -name '.*' -not -name .)"
 

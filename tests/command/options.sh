@@ -30,7 +30,7 @@ ends() {
 	same "$name: exit status" "$wanted" "$status"
 }
 
-# refuses NAME TEXT ARGUMENT …: exit 2, nothing on standard output, the text on standard error, and where to find help.
+# refuses NAME TEXT ARGUMENT …: exit 2, nothing on standard output; on standard error the text, and where to find help.
 refuses() {
 	local name=$1 text=$2
 	shift 2
@@ -48,18 +48,21 @@ is_json() {
 ends 'no command' 2
 same 'no command: help on standard error' 'Usage: scanlatch COMMAND [options] ARGUMENTS' "$(head -n 1 stderr)"
 same 'no command: nothing on standard output' '' "$stdout"
-refuses 'unknown command' 'scanlatch: there is no command "frobnicate"; the commands are check, build, prove, list' frobnicate good.yaml
+refuses 'unknown command' 'scanlatch: there is no command "frobnicate"; the commands are check, build, prove, list' \
+	frobnicate good.yaml
 refuses 'option before a command' 'scanlatch: unknown option "--json" before a command' --json check good.yaml
 for command in diff draw sheet fit lift readback probe export schema; do
 	ends "later command $command" 2 $command good.yaml
-	same "later command $command: says so" "scanlatch: the command \"$command\" is not carried out by this version yet" "$stderr"
+	same "later command $command: says so" "scanlatch: the command \"$command\" is not carried out by this version yet" \
+		"$stderr"
 done
 for command in check build prove list; do
 	refuses "$command: unknown option" "scanlatch $command: unrecognized option '--frobnicate'" $command --frobnicate
 	refuses "$command: unknown short option" "scanlatch $command: invalid option -- 'x'" $command -x
 	refuses "$command: bad colour" "scanlatch $command: --color: wanted auto, always or never, found \"blue\"" \
 		$command --color blue good.yaml
-	refuses "$command: colour without a value" "scanlatch $command: option '--color' requires an argument" $command --color
+	refuses "$command: colour without a value" "scanlatch $command: option '--color' requires an argument" \
+		$command --color
 done
 refuses 'check: no plan' 'scanlatch check: wanted at least one plan, found none' check
 refuses 'check: no plan after --' 'scanlatch check: wanted at least one plan, found none' check --json --
@@ -68,14 +71,17 @@ refuses 'build: no plan' 'scanlatch build: wanted at least one plan, found none'
 refuses 'build: no folder' 'scanlatch build: wanted -o DIR, the folder that the images go to' build good.yaml
 refuses 'build: empty folder' 'scanlatch build: wanted -o DIR, the folder that the images go to' build good.yaml -o ''
 refuses 'build: -o at the end' "scanlatch build: option requires an argument -- 'o'" build good.yaml -o
-refuses 'build: bad format' 'scanlatch build: --format: wanted bin, hex or bin,hex, found "elf"' build good.yaml -o out --format elf
-refuses 'build: format with a gap' 'scanlatch build: --format: wanted bin, hex or bin,hex, found "bin,"' build good.yaml -o out --format bin,
+refuses 'build: bad format' 'scanlatch build: --format: wanted bin, hex or bin,hex, found "elf"' \
+	build good.yaml -o out --format elf
+refuses 'build: format with a gap' 'scanlatch build: --format: wanted bin, hex or bin,hex, found "bin,"' \
+	build good.yaml -o out --format bin,
 refuses 'build: bad record' 'scanlatch build: --record: wanted 16 or 32, found "8"' build good.yaml -o out --record 8
 refuses 'prove: nothing' 'scanlatch prove: wanted a plan and images, found nothing' prove
 refuses 'prove: no images' 'scanlatch prove: wanted a plan and images, found no images' prove good.yaml
 refuses 'prove: a file without a label' \
 	'scanlatch prove: "good.yaml" is not a folder; a single image is given as LABEL=FILE' prove good.yaml good.yaml
-refuses 'prove: a label, then none' 'scanlatch prove: wanted LABEL=FILE, found "more"' prove good.yaml rom0=good.yaml more
+refuses 'prove: a label, then none' 'scanlatch prove: wanted LABEL=FILE, found "more"' \
+	prove good.yaml rom0=good.yaml more
 refuses 'prove: a folder and more' \
 	'scanlatch prove: wanted one folder, or LABEL=FILE for each chip, found "." and more' prove good.yaml . rom0=good.yaml
 refuses 'list: nothing' 'scanlatch list: wanted one catalogue (parts), found 0' list
@@ -92,7 +98,8 @@ same 'short help' "$("$SCANLATCH" --help)" "$("$SCANLATCH" -h)"
 for command in check build prove list; do
 	holds "help names $command" grep -q "^  $command " <<<"$("$SCANLATCH" --help)"
 	ends "$command --help" 0 $command --help
-	same "$command --help: usage" "Usage: scanlatch $command [options]" "$(head -n 1 stdout | grep -o '^Usage: scanlatch [a-z]* \[options\]')"
+	same "$command --help: usage" "Usage: scanlatch $command [options]" \
+		"$(head -n 1 stdout | grep -o '^Usage: scanlatch [a-z]* \[options\]')"
 	same "$command --help: nothing on standard error" '' "$stderr"
 	same "$command -h" "$stdout" "$("$SCANLATCH" $command -h)"
 	same "$command: help after arguments" "$stdout" "$("$SCANLATCH" $command one two --help)"
@@ -110,7 +117,8 @@ ends 'plan without states' 2 check short.yaml
 ends 'missing plan' 3 check none.yaml
 # A file that opens and then refuses to be read, for the superuser too (Linux).
 ends 'unreadable plan' 3 check /proc/self/mem
-same 'unreadable plan: says why' '/proc/self/mem: error: cannot read a plan: Input/output error [file-unreadable]' "$stderr"
+same 'unreadable plan: says why' '/proc/self/mem: error: cannot read a plan: Input/output error [file-unreadable]' \
+	"$stderr"
 ends 'out of step' 1 check out-of-step.yaml
 holds 'out of step: says so' grep -q '^FAIL  colour ' stdout
 ends 'slow memory' 0 check slow.yaml
@@ -185,8 +193,10 @@ holds 'build --json, nothing written: no folder' test ! -e nowhere
 json 'prove --json' 0 prove --json good.yaml out
 json 'list --json' 0 list --json parts
 same 'list --json: a part' '17' \
-	"$(python3 -c 'import json; print([m["address_pins"] for m in json.load(open("stdout"))["memories"] if m["name"] == "28C010"][0])')"
+	"$(python3 -c 'import json
+print(*[memory["address_pins"] for memory in json.load(open("stdout"))["memories"] if memory["name"] == "28C010"])')"
 ends 'list parts' 0 list parts
-holds 'list parts: the part, its size and its grades' grep -Eq '^28C010 +128K x 8 +131072 +17 +8 +DIP-32 +120, 150, 200 ns$' stdout
+holds 'list parts: the part, its size and its grades' \
+	grep -Eq '^28C010 +128K x 8 +131072 +17 +8 +DIP-32 +120, 150, 200 ns$' stdout
 
 finish

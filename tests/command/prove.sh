@@ -36,7 +36,8 @@ refuses() {
 
 # What is proved is what build proved.
 prove 0 lock-gate-sign.yaml images
-same 'the same report as build printed' "$("$SCANLATCH" build lock-gate-sign.yaml -o images | sed '1d; /^kept/d')" "$(cat stdout)"
+same 'the same report as build printed' "$("$SCANLATCH" build lock-gate-sign.yaml -o images | sed '1d; /^kept/d')" \
+	"$(cat stdout)"
 prove 0 scrambled.yaml U1=images/scrambled.U1.bin U2=images/scrambled.U2.bin
 prove 0 scrambled.yaml U2=images/scrambled.U2.hex U1=images/scrambled.U1.bin
 prove 0 scrambled.yaml U1=images/scrambled.U1.hex U2=images/scrambled.U2.hex U1=images/scrambled.U1.bin
@@ -66,7 +67,7 @@ prove 0 lead.yaml rom0=segment.hex
 printf ':\xe6\xf7\xe0' >colon.bin
 prove 1 lead.yaml rom0=colon.bin
 
-# Images that another maker chose other states for: the plan leaves them free. 0 2 1 3, then 2 0 1 3 with a start of its own.
+# Images that another maker chose other states for, which the plan leaves free: 0 2 1 3; and 2 0 1 3, with another start.
 printf '\xfe\xff\xfd\xf8' >states.bin
 prove 0 unused-line.yaml rom0=states.bin
 holds 'other states: home' grep -q 'home in state 0x0 after 4 us$' stdout
@@ -80,11 +81,13 @@ holds 'other codes: sync' grep -q 'sync is asserted in code of field code: 3$' s
 holds 'other codes: blank' grep -q 'blank is asserted in codes of field code: 2 3$' stdout
 
 # What cannot be images of the chip.
-refuses image-format 'broken.hex:6:1: error: Intel HEX: a record that does not have the length it says' lead.yaml rom0=broken.hex
+refuses image-format 'broken.hex:6:1: error: Intel HEX: a record that does not have the length it says' \
+	lead.yaml rom0=broken.hex
 printf ':04000000EDE6F7E052\n:00000001FF\n' | tr F f | sed 's/52/53/' >sum.hex
 refuses image-format 'sum.hex:1:1: error: Intel HEX: a record whose checksum is wrong' lead.yaml rom0=sum.hex
 head -c 25 images/lead.rom0.hex >cut.hex
-refuses image-format 'cut.hex:2:1: error: Intel HEX: a record that does not have the length it says' lead.yaml rom0=cut.hex
+refuses image-format 'cut.hex:2:1: error: Intel HEX: a record that does not have the length it says' \
+	lead.yaml rom0=cut.hex
 head -c 20 images/lead.rom0.hex >end.hex
 refuses image-format 'end.hex: error: Intel HEX: no end record' lead.yaml rom0=end.hex
 head -c 3 images/lead.rom0.bin >small.bin
@@ -97,20 +100,24 @@ holds 'a letter in the first record: hint' \
 refuses image-size 'empty.bin: error: 0 bytes, but chip "rom0" (BUOYROM) has 4' lead.yaml rom0=empty.bin
 refuses image-size 'images/lock-gate-sign.U4.bin: error: 8192 bytes, but chip "U3" (28C256) has 32768' \
 	lock-gate-sign.yaml U3=images/lock-gate-sign.U4.bin U4=images/lock-gate-sign.U3.bin
-refuses image-missing 'scrambled.yaml: error: there is no image for chip "U2" (LOCKROM)' scrambled.yaml U1=bin/scrambled.U1.bin
+refuses image-missing 'scrambled.yaml: error: there is no image for chip "U2" (LOCKROM)' \
+	scrambled.yaml U1=bin/scrambled.U1.bin
 refuses image-missing 'scrambled.yaml: error: there is no image for chip "U1" (LOCKROM)' scrambled.yaml 'odd=name/..'
 holds 'a folder without images: the names that were wanted' \
 	grep -Fqx '  hint: the folder odd=name/.. has neither scrambled.U1.bin nor scrambled.U1.hex' stderr
-refuses image-unknown-chip 'bin/scrambled.U1.bin: error: the plan has no chip "U7"' scrambled.yaml U7=bin/scrambled.U1.bin
+refuses image-unknown-chip 'bin/scrambled.U1.bin: error: the plan has no chip "U7"' \
+	scrambled.yaml U7=bin/scrambled.U1.bin
 holds 'an unknown chip: those that there are' grep -Fqx '  hint: its chips are U1, U2' stderr
 refuses image-unknown-chip 'bin/scrambled.U1.bin: error: the plan has no chip ""' scrambled.yaml =bin/scrambled.U1.bin
 cp -r images both
 printf '\x7f\xff\xfe\x77' >both/scrambled.U1.bin
-refuses image-disagrees 'both/scrambled.U1.hex: error: byte 0xFF at 0x2, where another file for chip "U1" has 0xFE' scrambled.yaml both
+refuses image-disagrees 'both/scrambled.U1.hex: error: byte 0xFF at 0x2, where another file for chip "U1" has 0xFE' \
+	scrambled.yaml both
 refuses file-is-directory 'images: error: wanted an image, found a directory' lead.yaml rom0=images
 refuses unknown-key 'bad.yaml:13:1: error: a plan has no key "colour"' bad.yaml images
 prove 3 lead.yaml rom0=none.bin
-same 'a missing image: message' 'none.bin: error: cannot read an image: No such file or directory [file-unreadable]' "$(cat stderr)"
+same 'a missing image: message' 'none.bin: error: cannot read an image: No such file or directory [file-unreadable]' \
+	"$(cat stderr)"
 prove 3 none.yaml images
 
 # A gap is a notice, and its bytes count as erased.
@@ -123,7 +130,8 @@ same 'a gap: message' \
 # A wrong level: row 1 holds load (D3) of cell 2, where it has led already.
 printf '\xed\xee\xf7\xe0' >level.bin
 prove 1 lead.yaml rom0=level.bin
-same 'a wrong level: where, and which byte' 'FAIL  signals   not all of 12 pin levels and 4 held addresses are as planned
+same 'a wrong level: where, and which byte' \
+	'FAIL  signals   not all of 12 pin levels and 4 held addresses are as planned
       load is high, expected low
       at line 0 (only), cell 2 (picture); cell 2 of the frame
       row of state 0x1, which sets load: byte 0xEE at address 0x1 of chip rom0' "$(grep -A 3 'FAIL  signals' stdout)"
