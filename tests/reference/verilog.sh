@@ -8,6 +8,7 @@ set -u
 work=$(mktemp -d) || exit 1
 trap 'rm -rf "$work"' EXIT
 python=/usr/bin/python3
+export PYTHONDONTWRITEBYTECODE=1
 board=$PWD/tests/reference/loop_board.py
 model=$PWD/tests/reference/loop.v
 
