@@ -277,7 +277,7 @@ static void fuzz_mutate(struct fuzz_run *run)
 	const struct fuzz_input *seed = &run->corpus[fuzz_below(&run->random, run->count)];
 	memcpy(run->work.bytes, seed->bytes, seed->length);
 	run->work.length = seed->length;
-	for (size_t left = 1 + fuzz_below(&run->random, 5); left > 0; left--) {
+	for (size_t left = 1 + fuzz_below(&run->random, 1 + fuzz_below(&run->random, 5)); left > 0; left--) {
 		const size_t kind = fuzz_below(&run->random, 10);
 		if (kind < 5 && run->fuzz->digits)
 			fuzz_change_digit(run);
