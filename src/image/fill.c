@@ -11,11 +11,11 @@
 struct lane_writer {
 	const struct chip *chip;
 	const struct wiring *wiring;
-	uint32_t next[3][256];       // a byte of the next state to its part of the lane
-	uint64_t known_levels;       // levels of which the lane is known, so that few are taken apart
+	uint32_t next[3][256]; // a byte of the next state to its part of the lane
+	uint64_t known_levels; // levels of which the lane is known, so that few are taken apart
 	uint32_t known_lane;
-	uint8_t *lanes;              // [2^state_bits] bytes, or twice as many with the low byte first
-	uint32_t states[4][256];     // a byte of the address to its part of the state
+	uint8_t *lanes;          // [2^state_bits] bytes, or twice as many with the low byte first
+	uint32_t states[4][256]; // a byte of the address to its part of the state
 };
 
 static size_t chip_width(const struct chip *chip)
@@ -67,7 +67,8 @@ static void make_tables(struct lane_writer *writer)
 				writer->states[pin / 8][byte] |= (uint32_t)1 << chip->address[pin].index;
 }
 
-static bool create_writer(struct lane_writer *writer, struct arena *arena, const struct chip *chip, const struct wiring *wiring)
+static bool create_writer(struct lane_writer *writer, struct arena *arena, const struct chip *chip,
+                          const struct wiring *wiring)
 {
 	*writer = (struct lane_writer){.chip = chip, .wiring = wiring, .known_lane = lane_of_levels(chip, 0)};
 	make_tables(writer);
@@ -130,7 +131,8 @@ static void copy_scattered(const struct lane_writer *writer, const struct image 
 {
 	const size_t width = chip_width(writer->chip), addresses = image->length / width;
 	for (size_t start = 0; start < addresses; start += 256) {
-		const uint32_t high = writer->states[1][start >> 8 & 255] | writer->states[2][start >> 16 & 255] | writer->states[3][start >> 24];
+		const uint32_t high =
+			writer->states[1][start >> 8 & 255] | writer->states[2][start >> 16 & 255] | writer->states[3][start >> 24];
 		for (size_t low = 0; low < 256 && start + low < addresses; low++) {
 			const size_t state = high | writer->states[0][low];
 			for (size_t byte = 0; byte < width; byte++)

@@ -4,19 +4,19 @@
 
 #include "base/arena.h"
 
-#define ARRANGED_VALUES 64     // a set of values is a bit set
+#define ARRANGED_VALUES 64 // a set of values is a bit set
 #define ARRANGED_PATTERNS 16
-#define START ARRANGED_PATTERNS  // stands for the value of a fixed first cell, as if it were a pattern
+#define START ARRANGED_PATTERNS // stands for the value of a fixed first cell, as if it were a pattern
 #define PASSAGES 64
-#define LONG_RUN 15            // longer runs count as so long
+#define LONG_RUN 15 // longer runs count as so long
 #define PASSES 8
-#define RESTARTS 32            // for fields of few values
+#define RESTARTS 32 // for fields of few values
 #define RESTARTED_VALUES 16
 
 // A run of cells of one pattern between two others: `count` of the same kind.
 struct passage {
 	uint32_t from, through, to;
-	uint32_t cells;            // at most LONG_RUN
+	uint32_t cells; // at most LONG_RUN
 	uint64_t count;
 };
 
@@ -24,7 +24,7 @@ struct passage {
 struct arrangement {
 	struct automatic_field *field;
 	uint64_t sets[ARRANGED_PATTERNS + 1];
-	uint64_t follows[ARRANGED_PATTERNS][ARRANGED_PATTERNS];   // how often one pattern borders on another
+	uint64_t follows[ARRANGED_PATTERNS][ARRANGED_PATTERNS]; // how often one pattern borders on another
 	struct passage passages[PASSAGES];
 	size_t passage_count;
 };
@@ -72,7 +72,8 @@ static uint64_t cost_of(const struct arrangement *arrangement)
 	for (uint32_t left = 0; left < patterns; left++)
 		for (uint32_t right = left + 1; right < patterns; right++)
 			if (arrangement->follows[left][right] > 0)
-				cost += arrangement->follows[left][right] * (distance(arrangement->sets[left], arrangement->sets[right]) - 1);
+				cost += arrangement->follows[left][right] *
+				        (distance(arrangement->sets[left], arrangement->sets[right]) - 1);
 	for (size_t index = 0; index < arrangement->passage_count; index++)
 		if (!is_quiet(arrangement, &arrangement->passages[index]))
 			cost += arrangement->passages[index].count;
@@ -86,7 +87,8 @@ static void add_passage(struct arrangement *arrangement, struct passage passage)
 		passage.cells = LONG_RUN;
 	for (; index < arrangement->passage_count; index++) {
 		struct passage *known = &arrangement->passages[index];
-		if (known->from == passage.from && known->through == passage.through && known->to == passage.to && known->cells == passage.cells) {
+		if (known->from == passage.from && known->through == passage.through && known->to == passage.to &&
+		    known->cells == passage.cells) {
 			known->count++;
 			return;
 		}

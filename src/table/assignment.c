@@ -4,7 +4,8 @@
 
 #include "base/arena.h"
 
-bool assignment_create(struct assignment *assignment, struct arena *arena, const struct code_space *codes, uint32_t *state_of_cell)
+bool assignment_create(struct assignment *assignment, struct arena *arena, const struct code_space *codes,
+                       uint32_t *state_of_cell)
 {
 	const struct constraints *constraints = codes->constraints;
 	*assignment = (struct assignment){.constraints = constraints, .codes = codes, .state_of_cell = state_of_cell};
@@ -24,7 +25,8 @@ static void clear(struct assignment *assignment)
 
 static bool levels_agree(const struct assignment *assignment, uint32_t cell, uint32_t state)
 {
-	return cell_levels(assignment->constraints, cell) == assignment->codes->levels[code_of_state(assignment->codes, state)];
+	return cell_levels(assignment->constraints, cell) ==
+	       assignment->codes->levels[code_of_state(assignment->codes, state)];
 }
 
 static bool place_start(struct assignment *assignment, struct faults *faults)
@@ -86,7 +88,8 @@ static uint32_t only_state(const struct assignment *assignment, uint32_t class)
 	const uint32_t value = class_value(constraints, class);
 	const uint32_t free = constraints->decoder_mask & ~class_mask(constraints, class);
 	uint32_t subset = 0;
-	while (assignment->codes->pattern_of_code[code_of_state(assignment->codes, value | subset)] != class_pattern(constraints, class))
+	while (assignment->codes->pattern_of_code[code_of_state(assignment->codes, value | subset)] !=
+	       class_pattern(constraints, class))
 		subset = next_subset(subset, free);
 	return value | subset;
 }
@@ -115,7 +118,8 @@ static void place_singles(struct assignment *assignment, struct faults *faults)
 		if (states == 1 && class_mask(constraints, class) != 0)
 			place_single(assignment, class, cells, faults);
 		else if (states == 0 && !faults_full(faults, RULE_CODE_CONFLICT))
-			faults_add(faults, fault_at(RULE_CODE_CONFLICT, next_cell(assignment, class, constraints->class_first[class])));
+			faults_add(faults,
+			           fault_at(RULE_CODE_CONFLICT, next_cell(assignment, class, constraints->class_first[class])));
 	}
 }
 

@@ -7,20 +7,21 @@
 #define NO_LEVEL UINT32_MAX
 #define NO_CLASS UINT32_MAX
 
-// Hopcroft and Karp (1973): in each phase a breadth-first search from all cells without a state gives classes their distance, then a
-// depth-first search finds as many shortest paths to free states as there are without a state in common. Cells of a class
-// are interchangeable, so the graph's nodes are classes; its edges are found by running through a class's states.
+// Hopcroft and Karp (1973): in each phase a breadth-first search from all cells without a state gives classes their
+// distance, then a depth-first search finds as many shortest paths to free states as there are without a state in
+// common. Cells of a class are interchangeable, so the graph's nodes are classes; its edges are found by running
+// through a class's states.
 struct search {
 	struct assignment *assignment;
-	uint32_t *unmatched;       // cells without a state
+	uint32_t *unmatched; // cells without a state
 	uint32_t unmatched_count;
-	uint32_t *level;           // [classes]: distance from an unmatched cell
-	uint32_t nearest;          // level of the nearest classes with a free state, or NO_LEVEL
-	uint32_t *subset;          // [classes]: how far a class has run through its states in this phase
-	bool *exhausted;           // [classes]: it is through
-	uint32_t *queue;           // [classes]
-	uint32_t *path_class;      // [classes + 1]
-	uint32_t *path_state;      // [classes + 1]
+	uint32_t *level;      // [classes]: distance from an unmatched cell
+	uint32_t nearest;     // level of the nearest classes with a free state, or NO_LEVEL
+	uint32_t *subset;     // [classes]: how far a class has run through its states in this phase
+	bool *exhausted;      // [classes]: it is through
+	uint32_t *queue;      // [classes]
+	uint32_t *path_class; // [classes + 1]
+	uint32_t *path_state; // [classes + 1]
 };
 
 // Runs through the states of a class, ascending.
@@ -188,8 +189,8 @@ static void run_phase(struct search *search)
 	search->unmatched_count = kept;
 }
 
-// The states that the classes reached from one class may use, each counted once: all are owned, by cells of those classes or by
-// fixed ones. `seen` has a bit for each state.
+// The states that the classes reached from one class may use, each counted once: all are owned, by cells of those
+// classes or by fixed ones. `seen` has a bit for each state.
 static uint32_t count_reached(struct search *search, uint32_t class, uint8_t *seen)
 {
 	const struct assignment *assignment = search->assignment;

@@ -14,8 +14,8 @@ static bool allocate_field(struct automatic_field *field, struct arena *arena)
 	field->holder = arena_array(arena, field->values, sizeof(uint32_t));
 	field->label = arena_array(arena, field->values, sizeof(uint32_t));
 	field->asserted = arena_array(arena, field->values, sizeof(uint64_t));
-	return field->pattern_of != NULL && field->shares != NULL && field->group_size != NULL && field->group_of_value != NULL &&
-	       field->holder != NULL && field->label != NULL && field->asserted != NULL &&
+	return field->pattern_of != NULL && field->shares != NULL && field->group_size != NULL &&
+	       field->group_of_value != NULL && field->holder != NULL && field->label != NULL && field->asserted != NULL &&
 	       key_map_create(&field->patterns, arena, patterns, 0) && key_map_create(&field->groups, arena, patterns, 0);
 }
 
@@ -46,10 +46,12 @@ static void find_groups(struct automatic_field *field)
 	}
 }
 
-static bool create_field(struct automatic_field *field, struct arena *arena, const struct constraints *constraints, size_t index)
+static bool create_field(struct automatic_field *field, struct arena *arena, const struct constraints *constraints,
+                         size_t index)
 {
 	const struct plan *plan = constraints->plan;
-	*field = (struct automatic_field){.constraints = constraints, .field = &plan->machine.fields[index], .index = index, .signal = NO_SUBJECT};
+	*field = (struct automatic_field){
+		.constraints = constraints, .field = &plan->machine.fields[index], .index = index, .signal = NO_SUBJECT};
 	field->values = (field_mask(field->field) >> field->field->low) + 1;
 	field->states_each = constraints->state_count / field->values;
 	for (size_t signal = 0; signal < plan->signal_count; signal++) {
@@ -71,7 +73,8 @@ static bool create_field(struct automatic_field *field, struct arena *arena, con
 	return true;
 }
 
-bool automatic_create(struct arena *arena, const struct constraints *constraints, struct automatic_field **fields, size_t *count)
+bool automatic_create(struct arena *arena, const struct constraints *constraints, struct automatic_field **fields,
+                      size_t *count)
 {
 	const struct machine_plan *machine = &constraints->plan->machine;
 	*count = 0;
@@ -106,7 +109,8 @@ static void report_two(const struct automatic_field *field, uint32_t value, uint
 }
 
 // Gives a held value to its cell's pattern, unless that is impossible.
-static void hold_value(struct automatic_field *field, uint32_t value, uint32_t cell, uint32_t pattern, struct faults *faults)
+static void hold_value(struct automatic_field *field, uint32_t value, uint32_t cell, uint32_t pattern,
+                       struct faults *faults)
 {
 	struct share *share = &field->shares[pattern];
 	if (field->group_of_value[value] != share->group) {
@@ -138,7 +142,8 @@ static void hold_values(struct automatic_field *field, const struct assignment *
 			continue;
 		}
 		field->shares[pattern].held_cells++;
-		hold_value(field, start ? field->start : field_value(field->field, cell_value(constraints, cell)), cell, pattern, faults);
+		hold_value(field, start ? field->start : field_value(field->field, cell_value(constraints, cell)), cell,
+		           pattern, faults);
 	}
 }
 
@@ -204,8 +209,8 @@ static bool share_out(struct automatic_field *field, uint32_t group)
 	return true;
 }
 
-// Deals a group's free values out along the reflected binary (Gray) code, so that each pattern gets a path of one-bit steps, and
-// patterns lie in the order in which they first come up.
+// Deals a group's free values out along the reflected binary (Gray) code, so that each pattern gets a path of one-bit
+// steps, and patterns lie in the order in which they first come up.
 static void deal(struct automatic_field *field, uint32_t group)
 {
 	uint32_t pattern = 0, dealt = 0;
@@ -235,7 +240,8 @@ static uint32_t cell_of_group(const struct automatic_field *field, uint32_t grou
 	return field->constraints->pattern_first[pattern];
 }
 
-bool automatic_label(struct automatic_field *field, const struct assignment *assignment, struct arena *arena, struct faults *faults)
+bool automatic_label(struct automatic_field *field, const struct assignment *assignment, struct arena *arena,
+                     struct faults *faults)
 {
 	const size_t before = faults->count;
 	clear_field(field);

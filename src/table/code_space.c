@@ -30,7 +30,8 @@ bool code_space_create(struct code_space *space, struct arena *arena, const stru
 	space->pattern_of_code = arena_array(arena, space->count, sizeof *space->pattern_of_code);
 	space->pattern_start = arena_array(arena, (size_t)constraints->patterns.count + 1, sizeof *space->pattern_start);
 	space->pattern_codes = arena_array(arena, space->count, sizeof *space->pattern_codes);
-	return space->levels != NULL && space->pattern_of_code != NULL && space->pattern_start != NULL && space->pattern_codes != NULL;
+	return space->levels != NULL && space->pattern_of_code != NULL && space->pattern_start != NULL &&
+	       space->pattern_codes != NULL;
 }
 
 // Asserts signals in every code whose field holds `value`.

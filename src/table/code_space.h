@@ -7,14 +7,14 @@
 
 struct code_space {
 	const struct constraints *constraints;
-	uint32_t count;               // 2^(number of decoded bits)
-	uint32_t states_each;         // states with the same code
-	uint32_t compress[3][256];    // a byte of the state to its part of the code
-	uint32_t expand[3][256];      // a byte of the code to its part of the state
-	uint64_t *levels;             // [count]: asserted field signals
-	uint32_t *pattern_of_code;    // [count]; NO_PATTERN where no cell has this pattern
-	uint32_t *pattern_start;      // [patterns + 1]: where a pattern's codes begin in pattern_codes
-	uint32_t *pattern_codes;      // ascending in each pattern
+	uint32_t count;            // 2^(number of decoded bits)
+	uint32_t states_each;      // states with the same code
+	uint32_t compress[3][256]; // a byte of the state to its part of the code
+	uint32_t expand[3][256];   // a byte of the code to its part of the state
+	uint64_t *levels;          // [count]: asserted field signals
+	uint32_t *pattern_of_code; // [count]; NO_PATTERN where no cell has this pattern
+	uint32_t *pattern_start;   // [patterns + 1]: where a pattern's codes begin in pattern_codes
+	uint32_t *pattern_codes;   // ascending in each pattern
 };
 
 // Codes chosen for one field: value v asserts the signals asserted[v], beside those that list it.

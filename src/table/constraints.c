@@ -5,7 +5,7 @@
 // How often pattern, family and class change from a cell to the next: no more of them can there be.
 struct changes {
 	size_t patterns, families, classes;
-	uint32_t bits;    // held bits that ever differ from one cell to the next
+	uint32_t bits; // held bits that ever differ from one cell to the next
 };
 
 static struct changes count_changes(const struct constraints *constraints)
@@ -40,8 +40,8 @@ static bool allocate(struct constraints *constraints, struct arena *arena)
 	constraints->class_first = arena_array(arena, changes.classes, sizeof(uint32_t));
 	constraints->class_cells = arena_array(arena, changes.classes, sizeof(uint32_t));
 	constraints->class_of_cell = arena_array(arena, constraints->period, sizeof(uint32_t));
-	return constraints->pattern_cells != NULL && constraints->pattern_first != NULL && constraints->class_first != NULL &&
-	       constraints->class_cells != NULL && constraints->class_of_cell != NULL &&
+	return constraints->pattern_cells != NULL && constraints->pattern_first != NULL &&
+	       constraints->class_first != NULL && constraints->class_cells != NULL && constraints->class_of_cell != NULL &&
 	       key_map_create(&constraints->patterns, arena, changes.patterns, 0) &&
 	       key_map_create(&constraints->families, arena, changes.families, 0) &&
 	       key_map_create(&constraints->classes, arena, changes.classes, lowest_bit(changes.bits));

@@ -12,27 +12,28 @@
 #define NO_PATTERN KEY_ABSENT
 #define CLASS_FIXED UINT32_MAX
 
-// A pattern is a set of field signals that a cell must show asserted, all others not. A family is a hold mask with a pattern;
-// a class is a family with a hold value: every state with these held bits and this pattern will do for any of its cells.
+// A pattern is a set of field signals that a cell must show asserted, all others not. A family is a hold mask with a
+// pattern; a class is a family with a hold value: every state with these held bits and this pattern will do for any of
+// its cells.
 struct constraints {
 	const struct timeline *timeline;
 	const struct plan *plan;
 	const uint64_t *pins;
 	uint32_t period;
-	uint32_t state_count;        // 2^state_bits
-	uint32_t state_mask;         // all state bits
-	uint64_t field_signals;      // bit s: signal s comes from a field
-	uint32_t decoder_mask;       // the state bits of fields that signals come from
-	struct key_map patterns;     // asserted field signals
-	uint32_t *pattern_cells;     // [patterns.count]: cells of the pattern, fixed ones included
-	uint32_t *pattern_first;     // [patterns.count]: the first of them
-	struct key_map families;     // hold mask << 24 | pattern
-	struct key_map classes;      // family << 24 | hold value
-	uint32_t *class_first;       // [classes.count]: first cell
-	uint32_t *class_cells;       // [classes.count]: number of cells
-	uint32_t *class_of_cell;     // [period]; CLASS_FIXED where every bit is held
-	uint32_t *held_start;        // [classes.count + 1]: where the cells of a class begin in held_cells; none where nothing is held
-	uint32_t *held_cells;        // ascending in each class
+	uint32_t state_count;    // 2^state_bits
+	uint32_t state_mask;     // all state bits
+	uint64_t field_signals;  // bit s: signal s comes from a field
+	uint32_t decoder_mask;   // the state bits of fields that signals come from
+	struct key_map patterns; // asserted field signals
+	uint32_t *pattern_cells; // [patterns.count]: cells of the pattern, fixed ones included
+	uint32_t *pattern_first; // [patterns.count]: the first of them
+	struct key_map families; // hold mask << 24 | pattern
+	struct key_map classes;  // family << 24 | hold value
+	uint32_t *class_first;   // [classes.count]: first cell
+	uint32_t *class_cells;   // [classes.count]: number of cells
+	uint32_t *class_of_cell; // [period]; CLASS_FIXED where every bit is held
+	uint32_t *held_start;    // [classes.count + 1]: where a class begins in held_cells; free ones have no cells there
+	uint32_t *held_cells;    // ascending in each class
 };
 
 // Sorts the cells of the period into classes. Memory is the arena's; false when it is out. Linear time.

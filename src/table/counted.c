@@ -82,12 +82,13 @@ static bool check_cells(const struct constraints *constraints, struct arena *are
 }
 
 // A code may not come up both in a cell where the signal is asserted and in one where it is not.
-static bool check_automatic(const struct constraints *constraints, struct arena *arena, size_t signal, struct faults *faults)
+static bool check_automatic(const struct constraints *constraints, struct arena *arena, size_t signal,
+                            struct faults *faults)
 {
 	const size_t index = constraints->plan->signals[signal].field;
 	const struct field *field = &constraints->plan->machine.fields[index];
 	const size_t values = (size_t)(field_mask(field) >> field->low) + 1;
-	uint32_t *first = arena_array(arena, values, sizeof *first);   // cell + 1
+	uint32_t *first = arena_array(arena, values, sizeof *first); // cell + 1
 	if (first == NULL)
 		return faults_memory(faults);
 	for (uint32_t cell = 0; cell < constraints->period && !faults_full(faults, RULE_COUNTED_CONFLICT); cell++) {
@@ -110,7 +111,8 @@ static bool check_automatic(const struct constraints *constraints, struct arena 
 	return true;
 }
 
-bool count_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell, struct faults *faults)
+bool count_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell,
+                  struct faults *faults)
 {
 	const struct plan *plan = constraints->plan;
 	const uint32_t needed = constraints->period + (plan->machine.clear == CLEAR_ASYNC);

@@ -2,7 +2,8 @@
 
 struct fault fault_at(enum rule rule, uint32_t cell)
 {
-	return (struct fault){.rule = rule, .cell = cell, .other = NO_CELL, .field = NO_SUBJECT, .signal = NO_SUBJECT, .state = NO_STATE};
+	return (struct fault){
+		.rule = rule, .cell = cell, .other = NO_CELL, .field = NO_SUBJECT, .signal = NO_SUBJECT, .state = NO_STATE};
 }
 
 bool faults_full(const struct faults *faults, enum rule rule)

@@ -11,13 +11,13 @@
 
 struct fault {
 	enum rule rule;
-	uint32_t cell;       // of the period; NO_CELL: the machine as a whole
-	uint32_t other;      // a second cell, or NO_CELL
-	size_t field;        // index of a field, or NO_SUBJECT
-	size_t signal;       // index of a signal, or NO_SUBJECT
-	uint32_t state;      // NO_STATE where there is none
-	uint32_t needed;     // a count; for a value: what was expected
-	uint32_t available;  // a count; for a value: what was found
+	uint32_t cell;      // of the period; NO_CELL: the machine as a whole
+	uint32_t other;     // a second cell, or NO_CELL
+	size_t field;       // index of a field, or NO_SUBJECT
+	size_t signal;      // index of a signal, or NO_SUBJECT
+	uint32_t state;     // NO_STATE where there is none
+	uint32_t needed;    // a count; for a value: what was expected
+	uint32_t available; // a count; for a value: what was found
 };
 
 struct faults {

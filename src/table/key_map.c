@@ -2,7 +2,7 @@
 
 #include "base/arena.h"
 
-#define LINE_BITS 4   // 16 slots of four bytes: a cache line of most processors
+#define LINE_BITS 4 // 16 slots of four bytes: a cache line of most processors
 
 bool key_map_create(struct key_map *map, struct arena *arena, size_t limit, unsigned grain)
 {
@@ -17,8 +17,9 @@ bool key_map_create(struct key_map *map, struct arena *arena, size_t limit, unsi
 	return true;
 }
 
-// The slot that holds the key, or the empty one where it belongs. Fibonacci hashing (2^64 divided by the golden ratio) finds the line
-// of slots, the key's own bits the slot in it: frames count video addresses up, and those then share a line.
+// The slot that holds the key, or the empty one where it belongs. Fibonacci hashing (2^64 divided by the golden ratio)
+// finds the line of slots, the key's own bits the slot in it: frames count video addresses up, and those then share a
+// line.
 static uint32_t *slot_of(const struct key_map *map, uint64_t key)
 {
 	const uint64_t last = UINT64_MAX >> map->shift;

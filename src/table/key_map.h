@@ -11,15 +11,15 @@ struct arena;
 #define KEY_ABSENT UINT32_MAX
 
 struct key_map {
-	uint64_t *keys;    // [count], in the order added
+	uint64_t *keys; // [count], in the order added
 	uint32_t count;
-	uint32_t *slots;   // open addressing: number + 1, or 0
-	unsigned shift;    // 64 - log2 of the number of slots
+	uint32_t *slots; // open addressing: number + 1, or 0
+	unsigned shift;  // 64 - log2 of the number of slots
 	unsigned grain;
 };
 
-// An empty map with room for `limit` (at most 2^24 + 1) keys. Keys that are close to each other when their `grain` lowest bits are left
-// out lie close in memory. Memory is the arena's; false when it is out.
+// An empty map with room for `limit` (at most 2^24 + 1) keys. Keys that are close to each other when their `grain`
+// lowest bits are left out lie close in memory. Memory is the arena's; false when it is out.
 bool key_map_create(struct key_map *map, struct arena *arena, size_t limit, unsigned grain);
 
 // The number of a key, which is added if it is new. The caller adds no more keys than there is room for. Cannot fail.

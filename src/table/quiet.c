@@ -5,44 +5,44 @@
 #include "base/arena.h"
 #include "table/relax.h"
 
-#define AHEAD_CODES 1024                            // at most so many codes are looked at ahead
-#define AHEAD_BYTES ((size_t)1 << 18)               // of cost vectors in one window
-#define AHEAD_WORK ((uint64_t)1 << 26)              // bytes of cost vectors, and codes tried, in all walks
-#define RUN_STEPS 16                                // vectors that one run may use; beyond, costs count as settled
+#define AHEAD_CODES 1024               // at most so many codes are looked at ahead
+#define AHEAD_BYTES ((size_t)1 << 18)  // of cost vectors in one window
+#define AHEAD_WORK ((uint64_t)1 << 26) // bytes of cost vectors, and codes tried, in all walks
+#define RUN_STEPS 16                   // vectors that one run may use; beyond, costs count as settled
 #define REPLANS 256
 
 // Cells that allow the same codes, in a window of cells that are not settled.
 struct run {
 	uint32_t first_cell;
-	uint32_t mask, value, pattern;   // codes with these bits and this pattern, in the code space
-	uint32_t vector;                 // the first of its vectors, that of its last cell
-	uint32_t steps;                  // how many it has; cells further from the run's end share the last
-	uint32_t target;                 // the code that most of the run is to have, NO_CODE: not looked for yet
+	uint32_t mask, value, pattern; // codes with these bits and this pattern, in the code space
+	uint32_t vector;               // the first of its vectors, that of its last cell
+	uint32_t steps;                // how many it has; cells further from the run's end share the last
+	uint32_t target;               // the code that most of the run is to have, NO_CODE: not looked for yet
 	bool arrived;
 };
 
-// The vector of a cell says for each code of the cell before how many fields must jump, by more than one bit, from there on to the
-// end of the window: less a constant, which is in `dropped` relative to the vector of the cell after.
+// The vector of a cell says for each code of the cell before how many fields must jump, by more than one bit, from
+// there on to the end of the window: less a constant, which is in `dropped` relative to the vector of the cell after.
 struct quiet {
 	const struct assignment *assignment;
 	struct relaxer relaxer;
 	uint8_t *vectors;
 	uint8_t *dropped;
-	uint8_t *terminal;        // the vector of the cell after the window
+	uint8_t *terminal; // the vector of the cell after the window
 	uint8_t *blocked;
 	struct run *runs;
 	uint32_t run_limit;
 	uint32_t run_count;
-	uint32_t current;         // the run that the last chosen cell is in
-	uint32_t window_end;      // first cell after the window
-	uint32_t valid_end;       // first cell for which the window is not to be used: its end is too near
+	uint32_t current;    // the run that the last chosen cell is in
+	uint32_t window_end; // first cell after the window
+	uint32_t valid_end;  // first cell for which the window is not to be used: its end is too near
 	uint64_t work;
 	unsigned replans;
 	bool ahead;
-	uint32_t *near_start;     // [patterns]: codes of the pattern before this one in the list are used up
-	uint32_t *excluded;       // [codes]: cell + 1 for which the code will not do
-	uint32_t *reached;        // [codes]: what flood found
-	uint32_t *reached_from;   // [codes]: the code before it, NO_CODE if it was not found
+	uint32_t *near_start;   // [patterns]: codes of the pattern before this one in the list are used up
+	uint32_t *excluded;     // [codes]: cell + 1 for which the code will not do
+	uint32_t *reached;      // [codes]: what flood found
+	uint32_t *reached_from; // [codes]: the code before it, NO_CODE if it was not found
 };
 
 static bool allocate_window(struct quiet *quiet, struct arena *arena, uint32_t codes)
@@ -172,7 +172,8 @@ static void fill_terminal(struct quiet *quiet, uint32_t first)
 		quiet->terminal[code] = target == NO_CODE ? 0 : (uint8_t)relaxer_jumps(&quiet->relaxer, code, target);
 }
 
-// Fills the vectors of a run from its last cell backwards, until they no longer change; returns the vector of its first cell.
+// Fills the vectors of a run from its last cell backwards, until they no longer change; returns the vector of its first
+// cell.
 static const uint8_t *fill_run(struct quiet *quiet, uint32_t number, uint32_t vector, const uint8_t *next)
 {
 	const uint32_t codes = quiet->assignment->codes->count;
@@ -236,10 +237,12 @@ static bool may_stay(const struct quiet *quiet, uint32_t cell, uint32_t previous
 	const uint32_t distance = run_end(quiet, quiet->current) - 1 - cell;
 	if (distance >= run->steps)
 		return true;
-	return after[previous] == vector_of(quiet, quiet->current, distance)[previous] + quiet->dropped[run->vector + distance];
+	return after[previous] ==
+	       vector_of(quiet, quiet->current, distance)[previous] + quiet->dropped[run->vector + distance];
 }
 
-// The order of preference: fewest jumps, then states enough for the rest of the run, then fewest bits that change, then the lowest code.
+// The order of preference: fewest jumps, then states enough for the rest of the run, then fewest bits that change, then
+// the lowest code.
 static uint32_t rate(const struct quiet *quiet, uint32_t cell, uint32_t previous, uint32_t code, const uint8_t *after)
 {
 	const uint32_t change = previous == NO_CODE ? 0 : previous ^ code;
@@ -252,8 +255,8 @@ static uint32_t rate(const struct quiet *quiet, uint32_t cell, uint32_t previous
 	return jumps << 16 | (uint32_t)(quiet->assignment->remaining[code] < left) << 8 | bits;
 }
 
-// Finds, in steps of one bit, all codes that are as good as `origin` for the cells of the current run that are far from its end; each with the
-// code that it was reached from. Returns how many there are, in `reached`.
+// Finds, in steps of one bit, all codes that are as good as `origin` for the cells of the current run that are far from
+// its end; each with the code that it was reached from. Returns how many there are, in `reached`.
 static uint32_t flood(struct quiet *quiet, uint32_t cell, uint32_t origin)
 {
 	const struct run *run = &quiet->runs[quiet->current];
@@ -267,7 +270,8 @@ static uint32_t flood(struct quiet *quiet, uint32_t cell, uint32_t origin)
 	for (uint32_t index = 0; index < count; index++)
 		for (uint32_t bit = 1; bit < codes; bit <<= 1) {
 			const uint32_t code = quiet->reached[index] ^ bit;
-			if (quiet->reached_from[code] != NO_CODE || far[code] != far[origin] || !allows_here(quiet, run, cell, code))
+			if (quiet->reached_from[code] != NO_CODE || far[code] != far[origin] ||
+			    !allows_here(quiet, run, cell, code))
 				continue;
 			quiet->reached_from[code] = quiet->reached[index];
 			quiet->reached[count++] = code;
@@ -276,8 +280,8 @@ static uint32_t flood(struct quiet *quiet, uint32_t cell, uint32_t origin)
 	return count;
 }
 
-// The code with the most states left, of those that can be reached from where the run stands while its end is still far, and that have
-// enough for the rest of the run.
+// The code with the most states left, of those that can be reached from where the run stands while its end is still
+// far, and that have enough for the rest of the run.
 static uint32_t find_richest(struct quiet *quiet, uint32_t cell, uint32_t previous)
 {
 	const struct run *run = &quiet->runs[quiet->current];
@@ -296,8 +300,9 @@ static uint32_t find_richest(struct quiet *quiet, uint32_t cell, uint32_t previo
 	return best;
 }
 
-// A run that may stay where it is moves, once, to the code that has the most states left. So long runs spend the states of codes that
-// no other pattern is near to, and those that lead from pattern to pattern last till the frame's last line.
+// A run that may stay where it is moves, once, to the code that has the most states left. So long runs spend the states
+// of codes that no other pattern is near to, and those that lead from pattern to pattern last till the frame's last
+// line.
 static uint32_t move_on(struct quiet *quiet, uint32_t cell, uint32_t previous, const uint8_t *after)
 {
 	struct run *run = &quiet->runs[quiet->current];

@@ -4,7 +4,7 @@
 struct taker {
 	struct automatic_field *field;
 	uint32_t pattern;
-	uint32_t mask, value;   // what its cell holds
+	uint32_t mask, value; // what its cell holds
 };
 
 static unsigned count_bits(uint32_t bits)
@@ -48,7 +48,8 @@ static unsigned distance_to(const struct taker *taker, uint32_t value)
 	return distance;
 }
 
-// The best value to take: one that suits the cell's own hold, then the nearest, then the lowest; NO_CODE if there is none.
+// The best value to take: one that suits the cell's own hold, then the nearest, then the lowest; NO_CODE if there is
+// none.
 static uint32_t best_value(const struct taker *taker)
 {
 	uint32_t best = NO_CODE;

@@ -98,8 +98,9 @@ static const char *limits_words(const struct reporter *reporter, uint32_t cell)
 				break;
 			}
 	const bool both = held.length > 0 && decoded.length > 0;
-	const char *words = arena_format(reporter->arena, "%s%s%s%s%s", held.length > 0 ? "the hold of " : "", text_string(&held),
-	                                 both ? " and " : "", decoded.length > 0 ? "the codes of " : "", text_string(&decoded));
+	const char *words =
+		arena_format(reporter->arena, "%s%s%s%s%s", held.length > 0 ? "the hold of " : "", text_string(&held),
+	                 both ? " and " : "", decoded.length > 0 ? "the codes of " : "", text_string(&decoded));
 	text_release(&held);
 	text_release(&decoded);
 	return or_unnamed(words);
@@ -115,8 +116,8 @@ static void report_states_short(const struct reporter *reporter, const struct fa
 		return;
 	}
 	diagnose(reporter->diagnostics, RULE_STATES_SHORT, hold_place(reporter, fault->cell),
-	         "%s: %u states needed for this cell and those that compete with it under %s, %u available", cell_words(reporter, fault->cell),
-	         fault->needed, limits_words(reporter, fault->cell), fault->available);
+	         "%s: %u states needed for this cell and those that compete with it under %s, %u available",
+	         cell_words(reporter, fault->cell), fault->needed, limits_words(reporter, fault->cell), fault->available);
 }
 
 static void report_state_shared(const struct reporter *reporter, const struct fault *fault)
@@ -211,8 +212,10 @@ static void report_code_twice(const struct reporter *reporter, const struct faul
 	diagnose(reporter->diagnostics, RULE_CODE_CONFLICT,
 	         start ? hold_place(reporter, fault->cell) : field_place(reporter, fault->cell, fault->field),
 	         "%s, and %s, are held to one code, %u, of field \"%s\", but differ in its signals, which have codes: auto",
-	         cell_words(reporter, fault->cell), cell_words(reporter, fault->other), fault->available, field_name(reporter, fault->field));
-	diagnose_also(reporter->diagnostics, field_place(reporter, fault->other, fault->field), "the second of the two is held here");
+	         cell_words(reporter, fault->cell), cell_words(reporter, fault->other), fault->available,
+	         field_name(reporter, fault->field));
+	diagnose_also(reporter->diagnostics, field_place(reporter, fault->other, fault->field),
+	              "the second of the two is held here");
 }
 
 static void report_code_conflict(const struct reporter *reporter, const struct fault *fault)
@@ -224,10 +227,12 @@ static void report_code_conflict(const struct reporter *reporter, const struct f
 	const uint64_t asserted = asserted_at(reporter, fault->cell);
 	const size_t field = culprit(reporter, fault->cell, asserted);
 	const bool held = mask_at(reporter, fault->cell) != 0;
-	const char *what = field == NO_SUBJECT ? "the decoded fields together have"
-	                                       : or_unnamed(arena_format(reporter->arena, "field \"%s\" has", field_name(reporter, field)));
-	diagnose(reporter->diagnostics, RULE_CODE_CONFLICT, field_place(reporter, fault->cell, field), "%s: %s no code%s for %s",
-	         cell_words(reporter, fault->cell), what, held ? " that the hold allows" : "", levels_words(reporter, field, asserted));
+	const char *what = field == NO_SUBJECT
+	                       ? "the decoded fields together have"
+	                       : or_unnamed(arena_format(reporter->arena, "field \"%s\" has", field_name(reporter, field)));
+	diagnose(reporter->diagnostics, RULE_CODE_CONFLICT, field_place(reporter, fault->cell, field),
+	         "%s: %s no code%s for %s", cell_words(reporter, fault->cell), what, held ? " that the hold allows" : "",
+	         levels_words(reporter, field, asserted));
 	also_codes(reporter, field);
 }
 
@@ -259,8 +264,8 @@ static void report_start_signal(const struct reporter *reporter, const struct fa
 		if (lists_code(signal, code) == wanted)
 			continue;
 		diagnose(reporter->diagnostics, RULE_START_CONFLICT, reporter->plan->machine.start_place,
-		         "start has %u in field \"%s\", with which \"%s\" is %sasserted, but %s, wants it %sasserted", code, field->name,
-		         signal->name, wanted ? "not " : "", cell_words(reporter, 0), wanted ? "" : "not ");
+		         "start has %u in field \"%s\", with which \"%s\" is %sasserted, but %s, wants it %sasserted", code,
+		         field->name, signal->name, wanted ? "not " : "", cell_words(reporter, 0), wanted ? "" : "not ");
 		diagnose_also(reporter->diagnostics, signal->place, "signal \"%s\" has its codes here", signal->name);
 		return;
 	}
@@ -278,8 +283,8 @@ static void report_codes_short(const struct reporter *reporter, const struct fau
 {
 	const struct signal *signal = &reporter->plan->signals[fault->signal];
 	diagnose(reporter->diagnostics, RULE_CODES_SHORT, signal->place,
-	         "codes: auto needs %u codes of field \"%s\", but %u are available; the cells that lack them begin at %s", fault->needed,
-	         field_name(reporter, fault->field), fault->available, cell_words(reporter, fault->cell));
+	         "codes: auto needs %u codes of field \"%s\", but %u are available; the cells that lack them begin at %s",
+	         fault->needed, field_name(reporter, fault->field), fault->available, cell_words(reporter, fault->cell));
 	diagnose_hint(reporter->diagnostics, "give the field or the state another bit");
 }
 
@@ -288,9 +293,9 @@ static void report_counted_automatic(const struct reporter *reporter, const stru
 	const struct signal *signal = &reporter->plan->signals[fault->signal];
 	const bool asserted = asserted_at(reporter, fault->cell) >> fault->signal & 1;
 	diagnose(reporter->diagnostics, RULE_COUNTED_CONFLICT, signal->place,
-	         "signal \"%s\" is %sasserted in %s, and %sasserted in %s, but the counter has %u in field \"%s\" in both", signal->name,
-	         asserted ? "" : "not ", cell_words(reporter, fault->cell), asserted ? "not " : "", cell_words(reporter, fault->other),
-	         fault->available, field_name(reporter, fault->field));
+	         "signal \"%s\" is %sasserted in %s, and %sasserted in %s, but the counter has %u in field \"%s\" in both",
+	         signal->name, asserted ? "" : "not ", cell_words(reporter, fault->cell), asserted ? "not " : "",
+	         cell_words(reporter, fault->other), fault->available, field_name(reporter, fault->field));
 }
 
 static void report_counted_conflict(const struct reporter *reporter, const struct fault *fault)
@@ -302,13 +307,14 @@ static void report_counted_conflict(const struct reporter *reporter, const struc
 		report_counted_automatic(reporter, fault);
 	else if (fault->signal == NO_SUBJECT)
 		diagnose(reporter->diagnostics, RULE_COUNTED_CONFLICT, field_place(reporter, fault->cell, fault->field),
-		         "%s: field \"%s\" is held to %u, but the counter has state %u, with %u there", cell_words(reporter, fault->cell),
-		         field_name(reporter, fault->field), fault->needed, fault->state, fault->available);
+		         "%s: field \"%s\" is held to %u, but the counter has state %u, with %u there",
+		         cell_words(reporter, fault->cell), field_name(reporter, fault->field), fault->needed, fault->state,
+		         fault->available);
 	else
 		diagnose(reporter->diagnostics, RULE_COUNTED_CONFLICT, reporter->plan->signals[fault->signal].place,
-		         "%s: wanted \"%s\" %sasserted, but the counter has state %u, with %u in field \"%s\"", cell_words(reporter, fault->cell),
-		         reporter->plan->signals[fault->signal].name, fault->needed != 0 ? "" : "not ", fault->state, fault->available,
-		         field_name(reporter, fault->field));
+		         "%s: wanted \"%s\" %sasserted, but the counter has state %u, with %u in field \"%s\"",
+		         cell_words(reporter, fault->cell), reporter->plan->signals[fault->signal].name,
+		         fault->needed != 0 ? "" : "not ", fault->state, fault->available, field_name(reporter, fault->field));
 }
 
 static void report_counter_short(const struct reporter *reporter, const struct fault *fault)
@@ -316,34 +322,21 @@ static void report_counter_short(const struct reporter *reporter, const struct f
 	const bool passing = reporter->plan->machine.clear == CLEAR_ASYNC;
 	diagnose(reporter->diagnostics, RULE_COUNTER_SHORT, reporter->plan->machine.place,
 	         "the frame needs %u states%s, but a counter of %u bits has %u", fault->needed,
-	         passing ? ", one of them to clear the counter in" : "", reporter->plan->machine.state_bits, fault->available);
+	         passing ? ", one of them to clear the counter in" : "", reporter->plan->machine.state_bits,
+	         fault->available);
 	hint_bits(reporter, fault->needed);
 }
 
 static void report_fault(const struct reporter *reporter, const struct fault *fault)
 {
 	switch (fault->rule) {
-	case RULE_STATES_SHORT:
-		report_states_short(reporter, fault);
-		break;
-	case RULE_STATE_SHARED:
-		report_state_shared(reporter, fault);
-		break;
-	case RULE_CODE_CONFLICT:
-		report_code_conflict(reporter, fault);
-		break;
-	case RULE_START_CONFLICT:
-		report_start_conflict(reporter, fault);
-		break;
-	case RULE_CODES_SHORT:
-		report_codes_short(reporter, fault);
-		break;
-	case RULE_COUNTED_CONFLICT:
-		report_counted_conflict(reporter, fault);
-		break;
-	default:
-		report_counter_short(reporter, fault);
-		break;
+	case RULE_STATES_SHORT: report_states_short(reporter, fault); break;
+	case RULE_STATE_SHARED: report_state_shared(reporter, fault); break;
+	case RULE_CODE_CONFLICT: report_code_conflict(reporter, fault); break;
+	case RULE_START_CONFLICT: report_start_conflict(reporter, fault); break;
+	case RULE_CODES_SHORT: report_codes_short(reporter, fault); break;
+	case RULE_COUNTED_CONFLICT: report_counted_conflict(reporter, fault); break;
+	default: report_counter_short(reporter, fault); break;
 	}
 }
 

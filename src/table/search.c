@@ -30,7 +30,8 @@ static bool is_free(const struct automatic_field *field, uint32_t value)
 	return field->holder[value] == 0 && field->group_of_value[value] != KEY_ABSENT;
 }
 
-// The product of all values' choices, or CHOICES + 1 if it is larger than CHOICES; *wheels: how many values have a choice.
+// The product of all values' choices, or CHOICES + 1 if it is larger than CHOICES; *wheels: how many values have a
+// choice.
 static uint64_t count_choices(struct automatic_field *fields, size_t count, size_t *wheels)
 {
 	uint64_t choices = 1;
@@ -41,7 +42,8 @@ static uint64_t count_choices(struct automatic_field *fields, size_t count, size
 			uint32_t patterns = 0;
 			if (!is_free(&fields[index], value))
 				continue;
-			for (uint32_t pattern = next_pattern(&wheel, 0); pattern != NO_PATTERN; pattern = next_pattern(&wheel, pattern + 1))
+			for (uint32_t pattern = next_pattern(&wheel, 0); pattern != NO_PATTERN;
+			     pattern = next_pattern(&wheel, pattern + 1))
 				patterns++;
 			choices *= patterns;
 			if (choices > CHOICES)
@@ -51,7 +53,8 @@ static uint64_t count_choices(struct automatic_field *fields, size_t count, size
 	return choices;
 }
 
-struct label_search *label_search_create(struct arena *arena, struct automatic_field *fields, size_t count, uint64_t work, bool *too_many)
+struct label_search *label_search_create(struct arena *arena, struct automatic_field *fields, size_t count,
+                                         uint64_t work, bool *too_many)
 {
 	size_t wheels;
 	const uint64_t choices = count_choices(fields, count, &wheels);

@@ -8,8 +8,8 @@ struct solver {
 	struct arena *arena;
 	const struct constraints *constraints;
 	struct code_space codes;
-	struct code_choice *choices;           // [field_count]
-	struct automatic_field *automatic;     // [automatic_count]
+	struct code_choice *choices;       // [field_count]
+	struct automatic_field *automatic; // [automatic_count]
 	size_t automatic_count;
 	struct assignment assignment;
 };
@@ -18,7 +18,8 @@ static void fill_codes(struct solver *solver)
 {
 	for (size_t index = 0; index < solver->automatic_count; index++) {
 		automatic_assert(&solver->automatic[index]);
-		solver->choices[index] = (struct code_choice){solver->automatic[index].field, solver->automatic[index].asserted};
+		solver->choices[index] =
+			(struct code_choice){solver->automatic[index].field, solver->automatic[index].asserted};
 	}
 	code_space_fill(&solver->codes, solver->choices, solver->automatic_count);
 }
@@ -47,7 +48,8 @@ static bool try_codes(struct solver *solver, bool quietly, struct faults *faults
 	return assigned;
 }
 
-// Gives the pattern of a fault's cell more codes of some field. *shortage becomes a fault of the first field that has none to spare.
+// Gives the pattern of a fault's cell more codes of some field. *shortage becomes a fault of the first field that has
+// none to spare.
 static enum repair repair_codes(struct solver *solver, const struct fault *fault, struct fault *shortage)
 {
 	enum repair best = REPAIR_HOPELESS;
@@ -168,7 +170,8 @@ static bool try_start(struct solver *solver, bool start_fixed, uint32_t start, s
 	return solver->automatic_count > 0 ? try_automatic(solver, faults) : try_codes(solver, true, faults);
 }
 
-static bool create_solver(struct solver *solver, struct arena *arena, const struct constraints *constraints, uint32_t *state_of_cell)
+static bool create_solver(struct solver *solver, struct arena *arena, const struct constraints *constraints,
+                          uint32_t *state_of_cell)
 {
 	*solver = (struct solver){.arena = arena, .constraints = constraints};
 	solver->choices = arena_array(arena, constraints->plan->machine.field_count, sizeof *solver->choices);
@@ -177,7 +180,8 @@ static bool create_solver(struct solver *solver, struct arena *arena, const stru
 	       automatic_create(arena, constraints, &solver->automatic, &solver->automatic_count);
 }
 
-bool solve_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell, struct faults *faults)
+bool solve_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell,
+                  struct faults *faults)
 {
 	const struct machine_plan *machine = &constraints->plan->machine;
 	struct faults ignored = {.count = 0};

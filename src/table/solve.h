@@ -5,12 +5,15 @@
 #include "table/constraints.h"
 #include "table/faults.h"
 
-// Chooses states, and with them codes for signals with codes: auto, for a machine that advances by table. The first cell gets the
-// plan's start or else, wherever some assignment allows it, state 0, which a cleared latch holds. False with faults if there is no assignment.
-// state_of_cell[period] is then unspecified.
-bool solve_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell, struct faults *faults);
+// Chooses states, and with them codes for signals with codes: auto, for a machine that advances by table. The first
+// cell gets the plan's start or else, wherever some assignment allows it, state 0, which a cleared latch holds. False
+// with faults if there is no assignment. state_of_cell[period] is then unspecified.
+bool solve_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell,
+                  struct faults *faults);
 
-// Gives cell i state i, and checks that everything agrees with a counter. False with faults if not; state_of_cell is then unspecified.
-bool count_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell, struct faults *faults);
+// Gives cell i state i, and checks that everything agrees with a counter. False with faults if not; state_of_cell is
+// then unspecified.
+bool count_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell,
+                  struct faults *faults);
 
 #endif

@@ -2,12 +2,13 @@
 
 #include "base/arena.h"
 
-#define ATTEMPTS 16   // so many codes are tried for a held cell before it is left to be served without regard to quiet codes
+#define ATTEMPTS                                                                                                       \
+	16 // so many codes are tried for a held cell before it is left to be served without regard to quiet codes
 
 // For each class and code where the search for a free state has come to.
 struct cursors {
-	struct key_map map;   // class * number of codes + code
-	uint32_t *subsets;    // of the free bits that are not decoded
+	struct key_map map; // class * number of codes + code
+	uint32_t *subsets;  // of the free bits that are not decoded
 	bool *exhausted;
 	size_t limit;
 };
@@ -20,7 +21,8 @@ static bool create_cursors(struct cursors *cursors, struct arena *arena, size_t 
 	return cursors->subsets != NULL && cursors->exhausted != NULL && key_map_create(&cursors->map, arena, limit, 0);
 }
 
-// The lowest state of a class with some code that nobody owns; NO_STATE if there is none (or no cursor is left to look with).
+// The lowest state of a class with some code that nobody owns; NO_STATE if there is none (or no cursor is left to look
+// with).
 static uint32_t pick(const struct assignment *assignment, struct cursors *cursors, uint32_t class, uint32_t code)
 {
 	const struct constraints *constraints = assignment->constraints;
@@ -45,8 +47,8 @@ static void place(struct assignment *assignment, struct quiet *quiet, uint32_t c
 }
 
 // Chooses a cell's code, and with it its state if the cell is one of those that get theirs now.
-static uint32_t choose_and_place(struct assignment *assignment, struct quiet *quiet, struct cursors *cursors, uint32_t cell,
-                                 uint32_t previous, uint32_t first)
+static uint32_t choose_and_place(struct assignment *assignment, struct quiet *quiet, struct cursors *cursors,
+                                 uint32_t cell, uint32_t previous, uint32_t first)
 {
 	uint32_t code = quiet_choose(quiet, cell, previous, first);
 	for (unsigned attempt = 0; cursors != NULL && code != NO_CODE && attempt < ATTEMPTS; attempt++) {

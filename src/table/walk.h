@@ -5,8 +5,8 @@
 #include "table/assignment.h"
 #include "table/quiet.h"
 
-// Gives states of quiet codes to those held cells that have a choice of codes and hold `width` bits, as far as there are any. False when
-// memory is out.
+// Gives states of quiet codes to those held cells that have a choice of codes and hold `width` bits, as far as there
+// are any. False when memory is out.
 bool walk_hold(struct assignment *assignment, struct quiet *quiet, unsigned width, struct arena *arena);
 
 // Gives every cell that has no state, all of them free, the lowest state of a quiet code. False when memory is out.

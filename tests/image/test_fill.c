@@ -25,7 +25,8 @@ static void assert_bytes(const struct image *image, const uint8_t *bytes, size_t
 	assert_memory_equal(image->bytes, bytes, length);
 }
 
-// States 0, 1, 2, 3; sync, active low, in cell 3. Bits of a byte: D0, D1 next, D2 sync, D7 blank, which is high in cells 0 and 3.
+// States 0, 1, 2, 3; sync, active low, in cell 3. Bits of a byte: D0, D1 next, D2 sync, D7 blank, which is high in
+// cells 0 and 3.
 static struct bench *create_four(void)
 {
 	struct bench *bench = bench_create(2, 4);
@@ -44,29 +45,33 @@ static void test_straight(void **state)
 	struct chip *chip = add_chip(bench, 3, 8);
 	memcpy(chip->address, (const struct address_wire[]){STATE(0), STATE(1)}, 2 * sizeof *chip->address);
 	memcpy(chip->data,
-	       (const struct data_wire[]){NEXT(0), NEXT(1), {DATA_SIGNAL, 0}, OPEN_DATA, OPEN_DATA, OPEN_DATA, OPEN_DATA, {DATA_SIGNAL, 1}},
+	       (const struct data_wire[]){
+			   NEXT(0), NEXT(1), {DATA_SIGNAL, 0}, OPEN_DATA, OPEN_DATA, OPEN_DATA, OPEN_DATA, {DATA_SIGNAL, 1}},
 	       8 * sizeof *chip->data);
 	struct image image;
 	assert_true(images_fill(bench_table(bench), bench->arena, &image));
 	const uint8_t expected[] = {
-		0x7D,   // state 0: next 01, of cell 1: sync high (1 << 2), blank low; D3 to D6 open: 1
-		0x7E,   // state 1: next 10, of cell 2: sync high, blank low
-		0xFB,   // state 2: next 11, of cell 3: sync low, blank high
-		0xFC,   // state 3: next 00, of cell 0: sync high, blank high
-		0x7D, 0x7E, 0xFB, 0xFC,   // again with A2, which is open
+		0x7D,                   // state 0: next 01, of cell 1: sync high (1 << 2), blank low; D3 to D6 open: 1
+		0x7E,                   // state 1: next 10, of cell 2: sync high, blank low
+		0xFB,                   // state 2: next 11, of cell 3: sync low, blank high
+		0xFC,                   // state 3: next 00, of cell 0: sync high, blank high
+		0x7D, 0x7E, 0xFB, 0xFC, // again with A2, which is open
 	};
 	assert_bytes(&image, expected, sizeof expected);
 	bench_destroy(bench);
 }
 
-// Two chips share the address in different orders, with pins that are low, high, open, or a bank's; the word is split between them.
+// Two chips share the address in different orders, with pins that are low, high, open, or a bank's; the word is split
+// between them.
 static void test_scrambled(void **state)
 {
 	(void)state;
 	struct bench *bench = create_four();
 	struct chip *left = add_chip(bench, 4, 8), *right = add_chip(bench, 3, 8);
-	memcpy(left->address, (const struct address_wire[]){STATE(1), {ADDRESS_LOW, 0}, STATE(0), {ADDRESS_BANK, 0}}, 4 * sizeof *left->address);
-	memcpy(right->address, (const struct address_wire[]){{ADDRESS_HIGH, 0}, STATE(1), STATE(0)}, 3 * sizeof *right->address);
+	memcpy(left->address, (const struct address_wire[]){STATE(1), {ADDRESS_LOW, 0}, STATE(0), {ADDRESS_BANK, 0}},
+	       4 * sizeof *left->address);
+	memcpy(right->address, (const struct address_wire[]){{ADDRESS_HIGH, 0}, STATE(1), STATE(0)},
+	       3 * sizeof *right->address);
 	for (unsigned pin = 0; pin < 8; pin++)
 		left->data[pin] = right->data[pin] = (struct data_wire)OPEN_DATA;
 	left->data[6] = (struct data_wire)NEXT(0);
@@ -75,22 +80,22 @@ static void test_scrambled(void **state)
 	right->data[7] = (struct data_wire)NEXT(1);
 	struct image images[2];
 	assert_true(images_fill(bench_table(bench), bench->arena, images));
-	// Left: D6 next.0, D1 blank, the other six 1: 0xBD | next.0 << 6 | blank << 1.
-	// State 0: next 01, blank 0: 0xFD. State 1: next 10, blank 0: 0xBD. State 2: next 11, blank 1: 0xFF. State 3: next 00, blank 1: 0xBF.
-	// Address: A0 is state.1, A2 is state.0.
+	// Left: D6 next.0, D1 blank, the other six 1: 0xBD | next.0 << 6 | blank << 1. State 0: next 01, blank 0: 0xFD.
+	// State 1: next 10, blank 0: 0xBD. State 2: next 11, blank 1: 0xFF. State 3: next 00, blank 1: 0xBF. Address: A0 is
+	// state.1, A2 is state.0.
 	const uint8_t left_bytes[] = {
-		0xFD, 0xFF, 0xFD, 0xFF,   // A2 = 0: states 0 and 2, the same with A1 (wired low) at 1
-		0xBD, 0xBF, 0xBD, 0xBF,   // A2 = 1: states 1 and 3
-		0xFD, 0xFF, 0xFD, 0xFF,   // A3, the bank's, makes no difference
+		0xFD, 0xFF, 0xFD, 0xFF, // A2 = 0: states 0 and 2, the same with A1 (wired low) at 1
+		0xBD, 0xBF, 0xBD, 0xBF, // A2 = 1: states 1 and 3
+		0xFD, 0xFF, 0xFD, 0xFF, // A3, the bank's, makes no difference
 		0xBD, 0xBF, 0xBD, 0xBF,
 	};
-	// Right: D7 next.1, D0 sync: 0x7E | next.1 << 7 | sync. State 0: next 01, sync 1: 0x7F. State 1: next 10, sync 1: 0xFF.
-	// State 2: next 11, sync 0: 0xFE. State 3: next 00, sync 1: 0x7F. Address: A1 is state.1, A2 is state.0.
+	// Right: D7 next.1, D0 sync: 0x7E | next.1 << 7 | sync. State 0: next 01, sync 1: 0x7F. State 1: next 10, sync 1:
+	// 0xFF. State 2: next 11, sync 0: 0xFE. State 3: next 00, sync 1: 0x7F. Address: A1 is state.1, A2 is state.0.
 	const uint8_t right_bytes[] = {
-		0x7F, 0x7F,   // A1 = A2 = 0: state 0, the same with A0 (wired high) at 0
-		0xFE, 0xFE,   // A1: state 2
-		0xFF, 0xFF,   // A2: state 1
-		0x7F, 0x7F,   // both: state 3
+		0x7F, 0x7F, // A1 = A2 = 0: state 0, the same with A0 (wired high) at 0
+		0xFE, 0xFE, // A1: state 2
+		0xFF, 0xFF, // A2: state 1
+		0x7F, 0x7F, // both: state 3
 	};
 	assert_bytes(&images[0], left_bytes, sizeof left_bytes);
 	assert_bytes(&images[1], right_bytes, sizeof right_bytes);
@@ -115,11 +120,11 @@ static void test_sixteen_bits(void **state)
 	assert_true(images_fill(bench_table(bench), bench->arena, &image));
 	// Low byte 0xEE | next.1 | blank << 4, high byte 0x7E | next.0 | sync << 7.
 	const uint8_t expected[] = {
-		0xEE, 0xFF,   // state 0: next 01, sync 1, blank 0
-		0xFF, 0x7F,   // state 2: next 11, sync 0, blank 1
-		0xEF, 0xFE,   // state 1: next 10, sync 1, blank 0
-		0xFE, 0xFE,   // state 3: next 00, sync 1, blank 1
-		0xEE, 0xFF, 0xFF, 0x7F, 0xEF, 0xFE, 0xFE, 0xFE,   // A2 is open
+		0xEE, 0xFF,                                     // state 0: next 01, sync 1, blank 0
+		0xFF, 0x7F,                                     // state 2: next 11, sync 0, blank 1
+		0xEF, 0xFE,                                     // state 1: next 10, sync 1, blank 0
+		0xFE, 0xFE,                                     // state 3: next 00, sync 1, blank 1
+		0xEE, 0xFF, 0xFF, 0x7F, 0xEF, 0xFE, 0xFE, 0xFE, // A2 is open
 	};
 	assert_bytes(&image, expected, sizeof expected);
 	bench_destroy(bench);
@@ -142,16 +147,17 @@ static void test_sixteen_bits_straight(void **state)
 	struct image image;
 	assert_true(images_fill(bench_table(bench), bench->arena, &image));
 	const uint8_t expected[] = {
-		0xFD, 0xFD,   // state 0: next 01; sync 1, blank 0
-		0xFE, 0xFD,   // state 1: next 10
-		0xFF, 0xFE,   // state 2: next 11; sync 0, blank 1
-		0xFC, 0xFF,   // state 3: next 00; sync 1, blank 1
+		0xFD, 0xFD, // state 0: next 01; sync 1, blank 0
+		0xFE, 0xFD, // state 1: next 10
+		0xFF, 0xFE, // state 2: next 11; sync 0, blank 1
+		0xFC, 0xFF, // state 3: next 00; sync 1, blank 1
 	};
 	assert_bytes(&image, expected, sizeof expected);
 	bench_destroy(bench);
 }
 
-// A counter of two bits with three cells; clear on D7. Rows that are no cell's assert it, and with a synchronous clear the last cell's.
+// A counter of two bits with three cells; clear on D7. Rows that are no cell's assert it, and with a synchronous clear
+// the last cell's.
 static void test_counter(void **state)
 {
 	(void)state;
@@ -170,10 +176,10 @@ static void test_counter(void **state)
 		struct image image;
 		assert_true(images_fill(bench_table(bench), bench->arena, &image));
 		const uint8_t expected[] = {
-			0x7E,                                // state 0: cell 1 is no sync
-			0x7F,                                // state 1: cell 2 is
-			clear == CLEAR_SYNC ? 0xFE : 0x7E,   // state 2, the last
-			0xFE,                                // state 3: cleared, as before cell 0
+			0x7E,                              // state 0: cell 1 is no sync
+			0x7F,                              // state 1: cell 2 is
+			clear == CLEAR_SYNC ? 0xFE : 0x7E, // state 2, the last
+			0xFE,                              // state 3: cleared, as before cell 0
 		};
 		assert_bytes(&image, expected, sizeof expected);
 		bench_destroy(bench);
@@ -195,14 +201,15 @@ static void test_spare_rows(void **state)
 	struct chip *chip = add_chip(bench, 2, 8);
 	memcpy(chip->address, (const struct address_wire[]){STATE(0), STATE(1)}, 2 * sizeof *chip->address);
 	memset(chip->data, 0, sizeof chip->data);
-	memcpy(chip->data, (const struct data_wire[]){NEXT(0), NEXT(1), {DATA_SIGNAL, 0}, {DATA_SIGNAL, 1}}, 4 * sizeof *chip->data);
+	memcpy(chip->data, (const struct data_wire[]){NEXT(0), NEXT(1), {DATA_SIGNAL, 0}, {DATA_SIGNAL, 1}},
+	       4 * sizeof *chip->data);
 	struct image image;
 	assert_true(images_fill(bench_table(bench), bench->arena, &image));
 	const uint8_t expected[] = {
-		0xF6,   // state 0, the picture: next 10, sync high, blank low
-		0xFE,   // state 1, spare: next 10, sync high, blank high
-		0xF8,   // state 2, sync: next 00, sync low, blank high
-		0xFE,   // state 3, spare
+		0xF6, // state 0, the picture: next 10, sync high, blank low
+		0xFE, // state 1, spare: next 10, sync high, blank high
+		0xF8, // state 2, sync: next 00, sync low, blank high
+		0xFE, // state 3, spare
 	};
 	assert_bytes(&image, expected, sizeof expected);
 	bench_destroy(bench);
@@ -240,11 +247,14 @@ static void test_random_wires(void **state)
 			number = number * 1664525u + 1013904223u;
 			const unsigned other = (number >> 16) % (pin + 1);
 			chip->address[pin] = chip->address[other];
-			chip->address[other] = pin < 10 ? (struct address_wire)STATE(pin) : (struct address_wire){(enum address_wire_kind)(pin - 10), 0};
+			chip->address[other] = pin < 10 ? (struct address_wire)STATE(pin)
+			                                : (struct address_wire){(enum address_wire_kind)(pin - 10), 0};
 		}
 		for (unsigned pin = 0; pin < chip->part->data_pins; pin++) {
 			const unsigned bit = index * 8 + pin;
-			chip->data[pin] = bit < 10 ? (struct data_wire)NEXT(9 - bit) : bit < 16 ? (struct data_wire){DATA_SIGNAL, 15 - bit} : (struct data_wire)OPEN_DATA;
+			chip->data[pin] = bit < 10   ? (struct data_wire)NEXT(9 - bit)
+			                  : bit < 16 ? (struct data_wire){DATA_SIGNAL, 15 - bit}
+			                             : (struct data_wire)OPEN_DATA;
 		}
 	}
 	struct image images[2];
@@ -260,7 +270,8 @@ static void test_random_wires(void **state)
 				if (chip->address[pin].kind == ADDRESS_STATE && (address >> pin & 1) != 0)
 					at |= 1u << chip->address[pin].index;
 			for (unsigned pin = 0; pin < chip->part->data_pins; pin++)
-				assert_int_equal(images[index].bytes[address * width + pin / 8] >> pin % 8 & 1, pin_level(table, chip->data[pin], at));
+				assert_int_equal(images[index].bytes[address * width + pin / 8] >> pin % 8 & 1,
+				                 pin_level(table, chip->data[pin], at));
 		}
 	}
 	bench_destroy(bench);
@@ -283,14 +294,10 @@ static void test_checksums(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-		cmocka_unit_test(test_straight),
-		cmocka_unit_test(test_scrambled),
-		cmocka_unit_test(test_sixteen_bits),
-		cmocka_unit_test(test_sixteen_bits_straight),
-		cmocka_unit_test(test_counter),
-		cmocka_unit_test(test_spare_rows),
-		cmocka_unit_test(test_random_wires),
-		cmocka_unit_test(test_checksums),
+		cmocka_unit_test(test_straight),     cmocka_unit_test(test_scrambled),
+		cmocka_unit_test(test_sixteen_bits), cmocka_unit_test(test_sixteen_bits_straight),
+		cmocka_unit_test(test_counter),      cmocka_unit_test(test_spare_rows),
+		cmocka_unit_test(test_random_wires), cmocka_unit_test(test_checksums),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }

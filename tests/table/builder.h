@@ -1,5 +1,5 @@
-// Plans and timelines put together by hand, for tests of tables and images: one line type, whose regions are given one by one,
-// and a frame that repeats it.
+// Plans and timelines put together by hand, for tests of tables and images: one line type, whose regions are given one
+// by one, and a frame that repeats it.
 #ifndef SCANLATCH_TESTS_TABLE_BUILDER_H
 #define SCANLATCH_TESTS_TABLE_BUILDER_H
 
@@ -7,6 +7,7 @@
 #include <stddef.h>
 #include <setjmp.h>
 #include <stdint.h>
+
 #include <cmocka.h>
 
 #include <string.h>
@@ -24,8 +25,8 @@
 
 #define SIGNAL(number) ((uint64_t)1 << (number))
 
-// Places in the made-up source: the machine is line 1, its start line 2, signal n line 10 + n, region n line 100 + 10 n, hold k of
-// region n line 101 + 10 n + k.
+// Places in the made-up source: the machine is line 1, its start line 2, signal n line 10 + n, region n line 100 + 10
+// n, hold k of region n line 101 + 10 n + k.
 struct bench {
 	struct arena *arena;
 	struct source source;
@@ -40,8 +41,8 @@ struct bench {
 	struct laid_region laid_regions[BENCH_REGIONS];
 	struct chip chips[BENCH_CHIPS];
 	struct part parts[BENCH_CHIPS];
-	uint32_t cells;   // of the line so far
-	uint32_t room;    // for cells of the line
+	uint32_t cells; // of the line so far
+	uint32_t room;  // for cells of the line
 	struct diagnostics *diagnostics;
 	struct text printed;
 	struct table *table;
@@ -116,12 +117,14 @@ static inline size_t bench_data(struct bench *bench, const char *name)
 {
 	const size_t number = bench->plan.signal_count++;
 	assert_true(number < BENCH_SIGNALS);
-	bench->signals[number] = (struct signal){.name = name, .active_high = true, .place = bench_place(bench, 10 + (uint32_t)number)};
+	bench->signals[number] =
+		(struct signal){.name = name, .active_high = true, .place = bench_place(bench, 10 + (uint32_t)number)};
 	return number;
 }
 
 // A signal from a field, with `count` codes (ascending), or with codes: auto if codes is NULL.
-static inline size_t bench_coded(struct bench *bench, const char *name, size_t field, const uint32_t *codes, size_t count)
+static inline size_t bench_coded(struct bench *bench, const char *name, size_t field, const uint32_t *codes,
+                                 size_t count)
 {
 	const size_t number = bench_data(bench, name);
 	struct signal *signal = &bench->signals[number];
@@ -142,7 +145,10 @@ static inline void bench_region(struct bench *bench, const char *name, uint32_t 
 {
 	const size_t number = bench->line.region_count++;
 	assert_true(number < BENCH_REGIONS && bench->cells + cells <= bench->room);
-	bench->regions[number] = (struct region){.name = name, .cells = cells, .assert_mask = asserted, .holds = bench->holds[number],
+	bench->regions[number] = (struct region){.name = name,
+	                                         .cells = cells,
+	                                         .assert_mask = asserted,
+	                                         .holds = bench->holds[number],
 	                                         .place = bench_place(bench, 100 + 10 * (uint32_t)number)};
 	bench->laid_regions[number] = (struct laid_region){.first_cell = bench->cells, .cells = cells};
 	for (uint32_t cell = bench->cells; cell < bench->cells + cells; cell++) {
@@ -158,7 +164,8 @@ static inline void bench_add_hold(struct bench *bench, size_t field)
 	const size_t number = bench->line.region_count - 1;
 	const size_t hold = bench->regions[number].hold_count++;
 	assert_true(hold < BENCH_HOLDS);
-	bench->holds[number][hold] = (struct hold){.field = field, .place = bench_place(bench, (uint32_t)(101 + 10 * number + hold))};
+	bench->holds[number][hold] =
+		(struct hold){.field = field, .place = bench_place(bench, (uint32_t)(101 + 10 * number + hold))};
 	bench->timeline.has_holds = true;
 }
 
@@ -220,8 +227,8 @@ static inline void assert_row(struct row row, uint32_t next, bool clear, uint64_
 	assert_int_equal(row.levels, levels);
 }
 
-// Checks a table against the timeline without a look at how it was made: states differ, holds and start are kept, field signals are
-// asserted where the timeline says and nowhere else, codes ascend, and automatic codes all come up.
+// Checks a table against the timeline without a look at how it was made: states differ, holds and start are kept, field
+// signals are asserted where the timeline says and nowhere else, codes ascend, and automatic codes all come up.
 static inline void assert_valid(const struct bench *bench)
 {
 	const struct table *table = bench->table;
@@ -240,7 +247,8 @@ static inline void assert_valid(const struct bench *bench)
 	if (plan->machine.has_start)
 		assert_int_equal(table->state_of_cell[0], plan->machine.start);
 	for (uint32_t cell = 0; cell < timeline->cell_count && timeline->has_holds; cell++)
-		assert_int_equal(table->state_of_cell[cell % table->period] & timeline->hold_mask[cell], timeline->hold_value[cell]);
+		assert_int_equal(table->state_of_cell[cell % table->period] & timeline->hold_mask[cell],
+		                 timeline->hold_value[cell]);
 	for (size_t index = 0; index < plan->signal_count; index++) {
 		const struct signal *signal = &plan->signals[index];
 		if (signal->origin == FROM_DATA)

@@ -8,7 +8,8 @@ static void assert_printed(const struct bench *bench, const char *expected)
 	assert_string_equal(text_string(&bench->printed), expected);
 }
 
-// One signal, two patterns: state 0 is the first cell's, so code 0 is the picture's, and what is left is dealt out along 0, 1, 3, 2.
+// One signal, two patterns: state 0 is the first cell's, so code 0 is the picture's, and what is left is dealt out
+// along 0, 1, 3, 2.
 static void test_one_signal(void **state)
 {
 	(void)state;
@@ -46,7 +47,8 @@ static void test_board(void **state)
 	(void)state;
 	struct bench *bench = bench_create(9, 512);
 	const size_t select = bench_field(bench, "select", 8, 6);
-	const size_t sync = bench_coded(bench, "sync", select, NULL, 0), blank = bench_coded(bench, "blank", select, NULL, 0);
+	const size_t sync = bench_coded(bench, "sync", select, NULL, 0),
+				 blank = bench_coded(bench, "blank", select, NULL, 0);
 	const size_t burst = bench_coded(bench, "burst", select, NULL, 0);
 	for (uint32_t line = 0; line < 5; line++) {
 		bench_region(bench, "picture", 40, 0);
@@ -84,14 +86,15 @@ static void test_held_codes(void **state)
 	bench_destroy(bench);
 }
 
-// A signal with listed codes and one with automatic codes on one field: of the codes 0 and 1, which are left to "mute", one is
-// its and one is not; 2 and 3 are blank's, with mute and without.
+// A signal with listed codes and one with automatic codes on one field: of the codes 0 and 1, which are left to "mute",
+// one is its and one is not; 2 and 3 are blank's, with mute and without.
 static void test_listed_beside_automatic(void **state)
 {
 	(void)state;
 	struct bench *bench = bench_create(4, 16);
 	const size_t select = bench_field(bench, "select", 3, 2);
-	const size_t blank = bench_coded(bench, "blank", select, (const uint32_t[]){2, 3}, 2), mute = bench_coded(bench, "mute", select, NULL, 0);
+	const size_t blank = bench_coded(bench, "blank", select, (const uint32_t[]){2, 3}, 2),
+				 mute = bench_coded(bench, "mute", select, NULL, 0);
 	bench_region(bench, "a", 3, 0);
 	bench_region(bench, "b", 3, SIGNAL(mute));
 	bench_region(bench, "c", 3, SIGNAL(mute) | SIGNAL(blank));
@@ -99,7 +102,7 @@ static void test_listed_beside_automatic(void **state)
 	const struct table *table = bench_table(bench);
 	assert_valid(bench);
 	assert_codes(table, blank, (const uint32_t[]){2, 3}, 2);
-	assert_codes(table, mute, (const uint32_t[]){1, 3}, 2);   // a 0, b 1, c 3, d 2: round the square
+	assert_codes(table, mute, (const uint32_t[]){1, 3}, 2); // a 0, b 1, c 3, d 2: round the square
 	assert_int_equal(count_jumps(table, &bench->fields[select]), 0);
 	bench_destroy(bench);
 }
@@ -116,12 +119,13 @@ static void test_start(void **state)
 	bench_region(bench, "picture", 9, 0);
 	const struct table *table = bench_table(bench);
 	assert_valid(bench);
-	assert_codes(table, blank, (const uint32_t[]){2}, 1);   // nine picture cells need three codes, so one is left for four of blank
+	assert_codes(table, blank, (const uint32_t[]){2},
+	             1); // nine picture cells need three codes, so one is left for four of blank
 	bench_destroy(bench);
 }
 
-// Three cells hold the same low bits, so they need three codes, though one has states enough; four free cells need one. By numbers
-// alone either would have got two.
+// Three cells hold the same low bits, so they need three codes, though one has states enough; four free cells need one.
+// By numbers alone either would have got two.
 static void test_share_is_raised(void **state)
 {
 	(void)state;
@@ -154,7 +158,8 @@ static void test_shares_too_large(void **state)
 	bench_hold(bench, at, 0, 0);
 	bench_region(bench, "d", 3, 0);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:10:1: error: codes: auto needs 5 codes of field \"select\", but 4 are available; the cells that lack "
+	assert_printed(bench, "board.yaml:10:1: error: codes: auto needs 5 codes of field \"select\", but 4 are available; "
+	                      "the cells that lack "
 	                      "them begin at line 0 (\"quay\"), cell 4, region \"c\" [codes-short]\n"
 	                      "  hint: give the field or the state another bit\n");
 	bench_destroy(bench);
@@ -170,7 +175,8 @@ static void test_more_patterns_than_codes(void **state)
 	for (uint64_t pattern = 0; pattern < 5; pattern++)
 		bench_region(bench, "region", 1, pattern);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:10:1: error: codes: auto needs 5 codes of field \"select\", but 4 are available; the cells that lack "
+	assert_printed(bench, "board.yaml:10:1: error: codes: auto needs 5 codes of field \"select\", but 4 are available; "
+	                      "the cells that lack "
 	                      "them begin at line 0 (\"quay\"), cell 0, region \"region\" [codes-short]\n"
 	                      "  hint: give the field or the state another bit\n");
 	bench_destroy(bench);
@@ -187,8 +193,10 @@ static void test_code_held_twice(void **state)
 	bench_region(bench, "right", 2, 0);
 	bench_hold(bench, page, 1, 1);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:101:1: error: line 0 (\"quay\"), cell 0, region \"left\", and line 0 (\"quay\"), cell 3, region \"right\", "
-	                      "are held to one code, 2, of field \"page\", but differ in its signals, which have codes: auto [code-conflict]\n"
+	assert_printed(bench, "board.yaml:101:1: error: line 0 (\"quay\"), cell 0, region \"left\", and line 0 (\"quay\"), "
+	                      "cell 3, region \"right\", "
+	                      "are held to one code, 2, of field \"page\", but differ in its signals, which have codes: "
+	                      "auto [code-conflict]\n"
 	                      "board.yaml:111:1: note: the second of the two is held here\n");
 	bench_destroy(bench);
 }
@@ -211,8 +219,8 @@ static void test_shared_all_the_same(void **state)
 	bench_destroy(bench);
 }
 
-// Holds that cut through a field: each pattern needs a code that begins with 0 and one that begins with 1. Only a search finds that
-// those must be crossed: whoever takes 00 and 01 leaves none.
+// Holds that cut through a field: each pattern needs a code that begins with 0 and one that begins with 1. Only a
+// search finds that those must be crossed: whoever takes 00 and 01 leaves none.
 static void test_holds_cut_field(void **state)
 {
 	(void)state;
@@ -248,7 +256,8 @@ static void test_wide_field(void **state)
 	bench_destroy(bench);
 }
 
-// Forty cells hold the first bit of a field at 0, which leaves them 32 states: no codes help, and there are too many to try them all.
+// Forty cells hold the first bit of a field at 0, which leaves them 32 states: no codes help, and there are too many to
+// try them all.
 static void test_half_too_small(void **state)
 {
 	(void)state;

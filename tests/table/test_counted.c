@@ -58,8 +58,10 @@ static void test_automatic_conflict(void **state)
 	bench_region(bench, "line", 3, 0);
 	bench_region(bench, "sync", 3, SIGNAL(sync));
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:10:1: error: signal \"sync\" is not asserted in line 0 (\"quay\"), cell 2, region \"line\", and asserted in "
-	                      "line 0 (\"quay\"), cell 3, region \"sync\", but the counter has 1 in field \"pair\" in both [counted-conflict]\n");
+	assert_printed(bench, "board.yaml:10:1: error: signal \"sync\" is not asserted in line 0 (\"quay\"), cell 2, "
+	                      "region \"line\", and asserted in "
+	                      "line 0 (\"quay\"), cell 3, region \"sync\", but the counter has 1 in field \"pair\" in both "
+	                      "[counted-conflict]\n");
 	bench_destroy(bench);
 }
 
@@ -72,7 +74,9 @@ static void test_start(void **state)
 	bench_region(bench, "a", 3, 0);
 	bench_region(bench, "b", 3, 1);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:2:1: error: wanted start 0, since a counter begins its frame there, found 4 [counted-conflict]\n");
+	assert_printed(
+		bench,
+		"board.yaml:2:1: error: wanted start 0, since a counter begins its frame there, found 4 [counted-conflict]\n");
 	bench_destroy(bench);
 }
 
@@ -90,9 +94,11 @@ static void test_hold(void **state)
 	bench_hold(bench, at, 0, 1);
 	assert_null(bench_table(bench));
 	// Cells 7 and 8 are held to 0 and 1, but the counter has 3 and 0 there.
-	assert_printed(bench, "board.yaml:121:1: error: line 0 (\"quay\"), cell 7, region \"late\": field \"at\" is held to 0, but the counter has "
+	assert_printed(bench, "board.yaml:121:1: error: line 0 (\"quay\"), cell 7, region \"late\": field \"at\" is held "
+	                      "to 0, but the counter has "
 	                      "state 7, with 3 there [counted-conflict]\n"
-	                      "board.yaml:121:1: error: line 0 (\"quay\"), cell 8, region \"late\": field \"at\" is held to 1, but the counter has "
+	                      "board.yaml:121:1: error: line 0 (\"quay\"), cell 8, region \"late\": field \"at\" is held "
+	                      "to 1, but the counter has "
 	                      "state 8, with 0 there [counted-conflict]\n");
 	bench_destroy(bench);
 }
@@ -106,7 +112,8 @@ static void test_signal(void **state)
 	bench_region(bench, "line", 5, 0);
 	bench_region(bench, "sync", 2, SIGNAL(sync));
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:10:1: error: line 0 (\"quay\"), cell 4, region \"line\": wanted \"sync\" not asserted, but the counter has "
+	assert_printed(bench, "board.yaml:10:1: error: line 0 (\"quay\"), cell 4, region \"line\": wanted \"sync\" not "
+	                      "asserted, but the counter has "
 	                      "state 4, with 1 in field \"top\" [counted-conflict]\n");
 	bench_destroy(bench);
 }
@@ -119,8 +126,9 @@ static void test_short(void **state)
 	bench_region(bench, "a", 3, 0);
 	bench_region(bench, "b", 2, 1);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:1:1: error: the frame needs 5 states, but a counter of 2 bits has 4 [counter-short]\n"
-	                      "  hint: state: 3 bits would do\n");
+	assert_printed(bench,
+	               "board.yaml:1:1: error: the frame needs 5 states, but a counter of 2 bits has 4 [counter-short]\n"
+	               "  hint: state: 3 bits would do\n");
 	bench_destroy(bench);
 }
 
@@ -134,7 +142,8 @@ static void test_short_by_one(void **state)
 	bench_region(bench, "a", 3, 0);
 	bench_region(bench, "b", 1, 1);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:1:1: error: the frame needs 5 states, one of them to clear the counter in, but a counter of 2 bits has 4 "
+	assert_printed(bench, "board.yaml:1:1: error: the frame needs 5 states, one of them to clear the counter in, but a "
+	                      "counter of 2 bits has 4 "
 	                      "[counter-short]\n"
 	                      "  hint: state: 3 bits would do\n");
 	bench_destroy(bench);

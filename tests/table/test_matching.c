@@ -8,13 +8,14 @@ static void assert_printed(const struct bench *bench, const char *expected)
 	assert_string_equal(text_string(&bench->printed), expected);
 }
 
-// Cell 0 holds bit 1 at 0 (states 0, 1), cell 1 bit 0 at 0 (states 0, 2), cell 2 is held to 2. Whoever gives cell 0 the lowest state
-// has none left for cell 1.
+// Cell 0 holds bit 1 at 0 (states 0, 1), cell 1 bit 0 at 0 (states 0, 2), cell 2 is held to 2. Whoever gives cell 0 the
+// lowest state has none left for cell 1.
 static void test_greedy_fails(void **state)
 {
 	(void)state;
 	struct bench *bench = bench_create(2, 4);
-	const size_t high = bench_field(bench, "high", 1, 1), low = bench_field(bench, "low", 0, 0), at = bench_field(bench, "at", 1, 0);
+	const size_t high = bench_field(bench, "high", 1, 1), low = bench_field(bench, "low", 0, 0),
+				 at = bench_field(bench, "at", 1, 0);
 	bench_data(bench, "x");
 	bench_region(bench, "a", 1, 1);
 	bench_hold(bench, high, 0, 0);
@@ -27,7 +28,8 @@ static void test_greedy_fails(void **state)
 	bench_destroy(bench);
 }
 
-// The start has state 0, cell 1 may have 0 or 1, cells 2 and 3 may have 1 or 3: four cells in a chain for three states. State 2 is of no use.
+// The start has state 0, cell 1 may have 0 or 1, cells 2 and 3 may have 1 or 3: four cells in a chain for three states.
+// State 2 is of no use.
 static void test_chain_short(void **state)
 {
 	(void)state;
@@ -37,13 +39,14 @@ static void test_chain_short(void **state)
 	bench_start(bench, 0);
 	bench_region(bench, "zero", 1, 1);
 	bench_region(bench, "a", 1, 0);
-	bench_hold(bench, high, 0, 0);   // {0, 1}, of which 0 is the start
+	bench_hold(bench, high, 0, 0); // {0, 1}, of which 0 is the start
 	bench_region(bench, "b", 2, 0);
-	bench_hold(bench, low, 1, 0);    // {1, 3}
+	bench_hold(bench, low, 1, 0); // {1, 3}
 	assert_null(bench_table(bench));
 	// Cell 1 got 1, cell 2 got 3, and nobody can move.
-	assert_printed(bench, "board.yaml:121:1: error: line 0 (\"quay\"), cell 3, region \"b\": 4 states needed for this cell and "
-	                      "those that compete with it under the hold of \"low\", 3 available [states-short]\n");
+	assert_printed(
+		bench, "board.yaml:121:1: error: line 0 (\"quay\"), cell 3, region \"b\": 4 states needed for this cell and "
+			   "those that compete with it under the hold of \"low\", 3 available [states-short]\n");
 	bench_destroy(bench);
 }
 
@@ -57,8 +60,9 @@ static void test_hold_short(void **state)
 	bench_hold(bench, high, 0, 0);
 	bench_region(bench, "porch", 1, 1);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:101:1: error: line 0 (\"quay\"), cell 2, region \"picture\": 3 states needed for this "
-	                      "cell and those that compete with it under the hold of \"high\", 2 available [states-short]\n");
+	assert_printed(bench,
+	               "board.yaml:101:1: error: line 0 (\"quay\"), cell 2, region \"picture\": 3 states needed for this "
+	               "cell and those that compete with it under the hold of \"high\", 2 available [states-short]\n");
 	bench_destroy(bench);
 }
 
@@ -71,8 +75,9 @@ static void test_codes_leave_too_few(void **state)
 	bench_region(bench, "porch", 3, SIGNAL(blank));
 	bench_region(bench, "picture", 2, 0);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:100:1: error: line 0 (\"quay\"), cell 0, region \"porch\": 3 states needed for this "
-	                      "cell and those that compete with it under the codes of \"top\", 2 available [states-short]\n");
+	assert_printed(bench,
+	               "board.yaml:100:1: error: line 0 (\"quay\"), cell 0, region \"porch\": 3 states needed for this "
+	               "cell and those that compete with it under the codes of \"top\", 2 available [states-short]\n");
 	bench_destroy(bench);
 }
 
@@ -84,7 +89,8 @@ static void test_frame_too_long(void **state)
 	bench_region(bench, "a", 4, 0);
 	bench_region(bench, "b", 1, 1);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:1:1: error: the frame needs 5 states, one for each cell, but 2 bits of state have 4 [states-short]\n"
+	assert_printed(bench, "board.yaml:1:1: error: the frame needs 5 states, one for each cell, but 2 bits of state "
+	                      "have 4 [states-short]\n"
 	                      "  hint: state: 3 bits would do\n");
 	bench_destroy(bench);
 }
@@ -101,10 +107,12 @@ static void test_state_shared(void **state)
 	bench_region(bench, "right", 2, 0);
 	bench_hold(bench, at, 11, 1);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:101:1: error: line 0 (\"quay\"), cell 1, region \"left\", and line 0 (\"quay\"), cell 3, region "
-	                      "\"right\", are held to one state, 0xB, but their rows differ [state-shared]\n"
-	                      "board.yaml:121:1: note: the second of the two is held here\n"
-	                      "  hint: hold a further field that tells the cells apart, or leave some bits free\n");
+	assert_printed(
+		bench,
+		"board.yaml:101:1: error: line 0 (\"quay\"), cell 1, region \"left\", and line 0 (\"quay\"), cell 3, region "
+		"\"right\", are held to one state, 0xB, but their rows differ [state-shared]\n"
+		"board.yaml:121:1: note: the second of the two is held here\n"
+		"  hint: hold a further field that tells the cells apart, or leave some bits free\n");
 	bench_destroy(bench);
 }
 
@@ -122,10 +130,12 @@ static void test_state_shared_by_codes(void **state)
 	bench_hold(bench, at, 5, 0);
 	bench_region(bench, "end", 2, 0);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:101:1: error: line 0 (\"quay\"), cell 0, region \"left\", and line 0 (\"quay\"), cell 2, region "
-	                      "\"right\", are held to one state, 0xD, but their rows differ [state-shared]\n"
-	                      "board.yaml:121:1: note: the second of the two is held here\n"
-	                      "  hint: hold a further field that tells the cells apart, or leave some bits free\n");
+	assert_printed(
+		bench,
+		"board.yaml:101:1: error: line 0 (\"quay\"), cell 0, region \"left\", and line 0 (\"quay\"), cell 2, region "
+		"\"right\", are held to one state, 0xD, but their rows differ [state-shared]\n"
+		"board.yaml:121:1: note: the second of the two is held here\n"
+		"  hint: hold a further field that tells the cells apart, or leave some bits free\n");
 	bench_destroy(bench);
 }
 
@@ -140,10 +150,12 @@ static void test_start_taken(void **state)
 	bench_region(bench, "picture", 2, 0);
 	bench_hold(bench, at, 2, 1);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:2:1: error: line 0 (\"quay\"), cell 0, region \"porch\", and line 0 (\"quay\"), cell 2, region "
-	                      "\"picture\", are held to one state, 0x3, but their rows differ [state-shared]\n"
-	                      "board.yaml:111:1: note: the second of the two is held here\n"
-	                      "  hint: hold a further field that tells the cells apart, or leave some bits free\n");
+	assert_printed(
+		bench,
+		"board.yaml:2:1: error: line 0 (\"quay\"), cell 0, region \"porch\", and line 0 (\"quay\"), cell 2, region "
+		"\"picture\", are held to one state, 0x3, but their rows differ [state-shared]\n"
+		"board.yaml:111:1: note: the second of the two is held here\n"
+		"  hint: hold a further field that tells the cells apart, or leave some bits free\n");
 	bench_destroy(bench);
 }
 
@@ -159,7 +171,8 @@ static void test_start_against_hold(void **state)
 	bench_hold(bench, at, 1, 1);
 	bench_region(bench, "porch", 1, 1);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:2:1: error: start has 2 in field \"at\", but line 0 (\"quay\"), cell 0, region \"picture\", holds it "
+	assert_printed(bench, "board.yaml:2:1: error: start has 2 in field \"at\", but line 0 (\"quay\"), cell 0, region "
+	                      "\"picture\", holds it "
 	                      "to 1 [start-conflict]\n"
 	                      "board.yaml:102:1: note: the first cell is held here\n");
 	bench_destroy(bench);
@@ -175,7 +188,8 @@ static void test_start_against_signal(void **state)
 	bench_region(bench, "porch", 1, SIGNAL(blank));
 	bench_region(bench, "picture", 2, 0);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:2:1: error: start has 3 in field \"top\", with which \"blank\" is not asserted, but line 0 (\"quay\"), "
+	assert_printed(bench, "board.yaml:2:1: error: start has 3 in field \"top\", with which \"blank\" is not asserted, "
+	                      "but line 0 (\"quay\"), "
 	                      "cell 0, region \"porch\", wants it asserted [start-conflict]\n"
 	                      "board.yaml:10:1: note: signal \"blank\" has its codes here\n");
 	bench_destroy(bench);
@@ -191,7 +205,8 @@ static void test_hold_without_code(void **state)
 	bench_region(bench, "picture", 2, 0);
 	bench_hold(bench, top, 1, 1);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:111:1: error: line 0 (\"quay\"), cell 3, region \"picture\": field \"top\" has no code that the hold "
+	assert_printed(bench, "board.yaml:111:1: error: line 0 (\"quay\"), cell 3, region \"picture\": field \"top\" has "
+	                      "no code that the hold "
 	                      "allows for \"blank\" not asserted [code-conflict]\n"
 	                      "board.yaml:10:1: note: signal \"blank\" has its codes here\n");
 	bench_destroy(bench);
@@ -207,9 +222,11 @@ static void test_listed_codes_exclude(void **state)
 	bench_region(bench, "sync", 1, SIGNAL(blank) | SIGNAL(sync));
 	bench_region(bench, "picture", 2, 0);
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:100:1: error: line 0 (\"quay\"), cell 0, region \"sync\": field \"top\" has no code for \"blank\" "
-	                      "asserted, \"sync\" asserted [code-conflict]\n"
-	                      "board.yaml:10:1: note: signal \"blank\" has its codes here\n");
+	assert_printed(
+		bench,
+		"board.yaml:100:1: error: line 0 (\"quay\"), cell 0, region \"sync\": field \"top\" has no code for \"blank\" "
+		"asserted, \"sync\" asserted [code-conflict]\n"
+		"board.yaml:10:1: note: signal \"blank\" has its codes here\n");
 	bench_destroy(bench);
 }
 
@@ -224,9 +241,11 @@ static void test_overlapping_codes_exclude(void **state)
 	bench_region(bench, "sync", 1, SIGNAL(blank) | SIGNAL(sync));
 	bench_region(bench, "picture", 2, SIGNAL(sync));
 	assert_null(bench_table(bench));
-	assert_printed(bench, "board.yaml:100:1: error: line 0 (\"quay\"), cell 0, region \"sync\": the decoded fields together have no code "
-	                      "for \"blank\" asserted, \"sync\" asserted [code-conflict]\n"
-	                      "board.yaml:10:1: note: signal \"blank\" has its codes here\n");
+	assert_printed(
+		bench,
+		"board.yaml:100:1: error: line 0 (\"quay\"), cell 0, region \"sync\": the decoded fields together have no code "
+		"for \"blank\" asserted, \"sync\" asserted [code-conflict]\n"
+		"board.yaml:10:1: note: signal \"blank\" has its codes here\n");
 	bench_destroy(bench);
 }
 
@@ -249,8 +268,8 @@ static void test_handful(void **state)
 	bench_destroy(bench);
 }
 
-// A machine of `bits` bits in which every cell holds all bits but the lowest or all but the highest, drawn from an assignment of all
-// states: nobody has a choice between more than two, and the only assignments are far apart.
+// A machine of `bits` bits in which every cell holds all bits but the lowest or all but the highest, drawn from an
+// assignment of all states: nobody has a choice between more than two, and the only assignments are far apart.
 static void make_crossed(struct bench *bench, unsigned bits)
 {
 	const uint32_t count = (uint32_t)1 << bits;
@@ -261,11 +280,11 @@ static void make_crossed(struct bench *bench, unsigned bits)
 	bench_add_hold(bench, upper);
 	bench_add_hold(bench, lower);
 	for (uint32_t cell = 0; cell < count; cell++) {
-		number = number * 1664525u + 1013904223u;   // Numerical Recipes' generator
+		number = number * 1664525u + 1013904223u; // Numerical Recipes' generator
 		const uint32_t mask = field_mask(&bench->fields[number >> 30 & 1 ? upper : lower]);
 		bench->laid.asserted[cell] = number >> 29 & 1;
 		bench->timeline.hold_mask[cell] = mask;
-		bench->timeline.hold_value[cell] = (cell * 40503u & (count - 1)) & mask;   // odd, so a permutation
+		bench->timeline.hold_value[cell] = (cell * 40503u & (count - 1)) & mask; // odd, so a permutation
 	}
 }
 

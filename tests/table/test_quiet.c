@@ -3,7 +3,8 @@
 #include "builder.h"
 
 // The codes of a field along the period.
-static void assert_codes_run(const struct table *table, const struct field *field, const uint32_t *codes, uint32_t count)
+static void assert_codes_run(const struct table *table, const struct field *field, const uint32_t *codes,
+                             uint32_t count)
 {
 	assert_non_null(table);
 	assert_int_equal(table->period, count);
@@ -11,7 +12,8 @@ static void assert_codes_run(const struct table *table, const struct field *fiel
 		assert_int_equal(field_value(field, table->state_of_cell[cell]), codes[cell]);
 }
 
-// Blank cells between pictures held at 000 and at 011 step through 001, the lowest code on the way, and back the same way.
+// Blank cells between pictures held at 000 and at 011 step through 001, the lowest code on the way, and back the same
+// way.
 static void test_between_held_codes(void **state)
 {
 	(void)state;
@@ -48,7 +50,8 @@ static void test_longer_way(void **state)
 	bench_destroy(bench);
 }
 
-// A one-of-eight decoder: sync at 001, burst at 010, picture at 100, all else blank. Every way leads over 000, even of one cell.
+// A one-of-eight decoder: sync at 001, burst at 010, picture at 100, all else blank. Every way leads over 000, even of
+// one cell.
 static void test_one_of_eight(void **state)
 {
 	(void)state;
@@ -104,7 +107,8 @@ static void test_code_runs_out(void **state)
 	bench_destroy(bench);
 }
 
-// Held cells that may choose among codes choose quiet ones too: 01 in one line and, since that line has these states, 10 in the other.
+// Held cells that may choose among codes choose quiet ones too: 01 in one line and, since that line has these states,
+// 10 in the other.
 static void test_held_cells_choose(void **state)
 {
 	(void)state;
@@ -145,7 +149,8 @@ static void test_two_decoders(void **state)
 	bench_destroy(bench);
 }
 
-// A field too wide to look ahead in still goes bit by bit where it can see how: the codes of the picture are all that begin with 1.
+// A field too wide to look ahead in still goes bit by bit where it can see how: the codes of the picture are all that
+// begin with 1.
 static void test_wide_field(void **state)
 {
 	(void)state;
@@ -180,8 +185,8 @@ static void test_wide_field_jumps(void **state)
 	bench_destroy(bench);
 }
 
-// More changes than the look ahead takes in at once: a field of 10 bits that changes its pattern every few cells. Codes with an odd number
-// of ones assert, so that every change of one bit changes the pattern.
+// More changes than the look ahead takes in at once: a field of 10 bits that changes its pattern every few cells. Codes
+// with an odd number of ones assert, so that every change of one bit changes the pattern.
 static void test_many_runs(void **state)
 {
 	(void)state;
@@ -215,8 +220,8 @@ static void test_many_runs(void **state)
 #define FIELD_BITS 3
 #define CODES (1u << FIELD_BITS)
 
-// The least number of jumps, by going through all codes of all cells: worst case of the dynamic programming that is under test, but
-// forwards, over every cell, and without a thought for runs.
+// The least number of jumps, by going through all codes of all cells: worst case of the dynamic programming that is
+// under test, but forwards, over every cell, and without a thought for runs.
 static uint32_t least_jumps(const struct bench *bench, uint64_t signal_codes, uint32_t first_code)
 {
 	uint32_t cost[CODES], next[CODES];
@@ -224,8 +229,8 @@ static uint32_t least_jumps(const struct bench *bench, uint64_t signal_codes, ui
 		cost[code] = code == first_code ? 0 : 1000;
 	for (uint32_t cell = 1; cell <= bench->cells; cell++) {
 		for (uint32_t code = 0; code < CODES; code++) {
-			const bool allowed = cell == bench->cells ? code == first_code
-			                                          : (signal_codes >> code & 1) == bench->laid.asserted[cell];
+			const bool allowed =
+				cell == bench->cells ? code == first_code : (signal_codes >> code & 1) == bench->laid.asserted[cell];
 			next[code] = 1000;
 			for (uint32_t from = 0; from < CODES && allowed; from++) {
 				const uint32_t change = from ^ code;
@@ -268,7 +273,8 @@ static void test_fewest_jumps(void **state)
 		const struct table *table = bench_table(bench);
 		assert_valid(bench);
 		if (table->period == bench->cells)
-			assert_int_equal(count_jumps(table, &bench->fields[select]), least_jumps(bench, signal_codes, bench->plan.machine.start >> 6));
+			assert_int_equal(count_jumps(table, &bench->fields[select]),
+			                 least_jumps(bench, signal_codes, bench->plan.machine.start >> 6));
 		bench_destroy(bench);
 	}
 }
@@ -276,16 +282,11 @@ static void test_fewest_jumps(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-		cmocka_unit_test(test_between_held_codes),
-		cmocka_unit_test(test_longer_way),
-		cmocka_unit_test(test_one_of_eight),
-		cmocka_unit_test(test_back_to_start),
-		cmocka_unit_test(test_code_runs_out),
-		cmocka_unit_test(test_held_cells_choose),
-		cmocka_unit_test(test_two_decoders),
-		cmocka_unit_test(test_wide_field),
-		cmocka_unit_test(test_wide_field_jumps),
-		cmocka_unit_test(test_many_runs),
+		cmocka_unit_test(test_between_held_codes), cmocka_unit_test(test_longer_way),
+		cmocka_unit_test(test_one_of_eight),       cmocka_unit_test(test_back_to_start),
+		cmocka_unit_test(test_code_runs_out),      cmocka_unit_test(test_held_cells_choose),
+		cmocka_unit_test(test_two_decoders),       cmocka_unit_test(test_wide_field),
+		cmocka_unit_test(test_wide_field_jumps),   cmocka_unit_test(test_many_runs),
 		cmocka_unit_test(test_fewest_jumps),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);

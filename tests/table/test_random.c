@@ -1,5 +1,5 @@
-// Random tiny machines: a table is made exactly when a plain matching of cells with states, over all periods of the signals and all
-// choices of codes, finds one; and with the shortest such period.
+// Random tiny machines: a table is made exactly when a plain matching of cells with states, over all periods of the
+// signals and all choices of codes, finds one; and with the shortest such period.
 
 #include "builder.h"
 
@@ -126,7 +126,8 @@ static void add_signals(struct bench *bench, struct numbers *numbers, unsigned c
 				codes[codes_count++] = code;
 		if (codes_count == 0)
 			codes[codes_count++] = below(numbers, 1u << width);
-		const size_t signal = bench_coded(bench, "signal", field, index < automatic ? NULL : codes, index < automatic ? 0 : codes_count);
+		const size_t signal =
+			bench_coded(bench, "signal", field, index < automatic ? NULL : codes, index < automatic ? 0 : codes_count);
 		bench->signals[signal].lead_cells = (int64_t)below(numbers, 5) - 2;
 	}
 }
@@ -221,7 +222,8 @@ static void check_variety(const struct variety *variety, uint64_t seed)
 		const unsigned bits = variety->least_bits + below(&numbers, variety->bit_choices);
 		struct bench *bench = bench_create(bits, STATES);
 		add_fields(bench, &numbers, bits, 1 + below(&numbers, variety->field_choices), variety->widest);
-		const unsigned automatic = variety->automatic_choices == 0 ? 0 : 1 + below(&numbers, variety->automatic_choices);
+		const unsigned automatic =
+			variety->automatic_choices == 0 ? 0 : 1 + below(&numbers, variety->automatic_choices);
 		add_signals(bench, &numbers, automatic + below(&numbers, variety->signal_choices), automatic);
 		add_cells(bench, &numbers, 1 + below(&numbers, 1u << bits));
 		solved += check_machine(bench);

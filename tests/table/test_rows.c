@@ -2,8 +2,8 @@
 
 #include "builder.h"
 
-// Six cells, nothing held: states count up from 0, but 7, which is a bit from the last cell's 5 and must not be spare, takes the place of 3. Each
-// row stores what the next cell shows.
+// Six cells, nothing held: states count up from 0, but 7, which is a bit from the last cell's 5 and must not be spare,
+// takes the place of 3. Each row stores what the next cell shows.
 static void test_registered(void **state)
 {
 	(void)state;
@@ -16,13 +16,13 @@ static void test_registered(void **state)
 	bench_region(bench, "sync", 2, SIGNAL(blank) | SIGNAL(sync));
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){0, 1, 2, 7, 4, 5}, 6);
-	assert_row(table_row(table, 0), 1, false, 1);   // cell 1, picture: sync high (at rest), blank low
-	assert_row(table_row(table, 1), 2, false, 1);   // cell 2, picture
-	assert_row(table_row(table, 2), 7, false, 3);   // cell 3, porch: sync high, blank high
-	assert_row(table_row(table, 3), 4, false, 2);   // cell 4, sync: sync low, blank high
-	assert_row(table_row(table, 4), 5, false, 2);   // cell 5, sync
-	assert_row(table_row(table, 5), 0, false, 1);   // back to cell 0, picture
-	assert_row(table->spare, 0, false, 1);          // leads to cell 0, with its signals
+	assert_row(table_row(table, 0), 1, false, 1); // cell 1, picture: sync high (at rest), blank low
+	assert_row(table_row(table, 1), 2, false, 1); // cell 2, picture
+	assert_row(table_row(table, 2), 7, false, 3); // cell 3, porch: sync high, blank high
+	assert_row(table_row(table, 3), 4, false, 2); // cell 4, sync: sync low, blank high
+	assert_row(table_row(table, 4), 5, false, 2); // cell 5, sync
+	assert_row(table_row(table, 5), 0, false, 1); // back to cell 0, picture
+	assert_row(table->spare, 0, false, 1);        // leads to cell 0, with its signals
 	assert_valid(bench);
 	bench_destroy(bench);
 }
@@ -40,12 +40,12 @@ static void test_direct(void **state)
 	bench_region(bench, "porch", 1, SIGNAL(blank));
 	bench_region(bench, "sync", 2, SIGNAL(blank) | SIGNAL(sync));
 	const struct table *table = bench_table(bench);
-	assert_row(table_row(table, 0), 1, false, 1);   // picture: sync high, blank low
-	assert_row(table_row(table, 2), 7, false, 1);   // picture
-	assert_row(table_row(table, 3), 4, false, 3);   // porch
-	assert_row(table_row(table, 4), 5, false, 2);   // sync
-	assert_row(table_row(table, 5), 0, false, 2);   // sync
-	assert_row(table->spare, 0, false, 3);          // at rest, but blanked: sync high, blank high
+	assert_row(table_row(table, 0), 1, false, 1); // picture: sync high, blank low
+	assert_row(table_row(table, 2), 7, false, 1); // picture
+	assert_row(table_row(table, 3), 4, false, 3); // porch
+	assert_row(table_row(table, 4), 5, false, 2); // sync
+	assert_row(table_row(table, 5), 0, false, 2); // sync
+	assert_row(table->spare, 0, false, 3);        // at rest, but blanked: sync high, blank high
 	bench_destroy(bench);
 }
 
@@ -61,20 +61,20 @@ static void test_lead(void **state)
 	bench_region(bench, "b", 1, SIGNAL(load) | SIGNAL(mute));
 	bench_region(bench, "c", 2, 0);
 	const struct table *table = bench_table(bench);
-	assert_int_equal(table->pins[0], SIGNAL(load));   // the timeline has it at cell 1
+	assert_int_equal(table->pins[0], SIGNAL(load)); // the timeline has it at cell 1
 	assert_int_equal(table->pins[1], 0);
-	assert_int_equal(table->pins[2], SIGNAL(mute));   // the timeline had it at cell 1
+	assert_int_equal(table->pins[2], SIGNAL(mute)); // the timeline had it at cell 1
 	assert_int_equal(table->pins[3], 0);
-	assert_row(table_row(table, 0), 1, false, 0);     // the pins of cell 1
-	assert_row(table_row(table, 1), 2, false, 2);     // the pins of cell 2: mute
+	assert_row(table_row(table, 0), 1, false, 0); // the pins of cell 1
+	assert_row(table_row(table, 1), 2, false, 2); // the pins of cell 2: mute
 	assert_row(table_row(table, 2), 3, false, 0);
-	assert_row(table_row(table, 3), 0, false, 1);     // the pins of cell 0: load
+	assert_row(table_row(table, 3), 0, false, 1); // the pins of cell 0: load
 	assert_row(table->spare, 0, false, 1);
 	bench_destroy(bench);
 }
 
-// A signal decoded from the top bit has no bit in the word, and picks the half of the states that its cells lie in. Of the states a bit from the
-// last cell's 6, 4 is used; 7 and 2 take the places of 5 and 1 in their halves.
+// A signal decoded from the top bit has no bit in the word, and picks the half of the states that its cells lie in. Of
+// the states a bit from the last cell's 6, 4 is used; 7 and 2 take the places of 5 and 1 in their halves.
 static void test_field_signal(void **state)
 {
 	(void)state;
@@ -90,7 +90,7 @@ static void test_field_signal(void **state)
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){0, 2, 4, 7, 6}, 5);
 	assert_row(table_row(table, 0), 2, false, 0);
-	assert_row(table_row(table, 1), 4, false, 1);   // burst is asserted in cell 2; blank is no data signal
+	assert_row(table_row(table, 1), 4, false, 1); // burst is asserted in cell 2; blank is no data signal
 	assert_row(table_row(table, 2), 7, false, 0);
 	assert_row(table_row(table, 4), 0, false, 0);
 	assert_row(table->spare, 0, false, 0);
@@ -160,8 +160,8 @@ static void test_hold_and_start(void **state)
 	bench_hold(bench, at, 0, 1);
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){7, 3, 4, 0, 1, 2}, 6);
-	assert_row(table_row(table, 2), 0, false, 0);   // from the porch into the picture at state 0
-	assert_row(table_row(table, 5), 7, false, 1);   // and back to the start
+	assert_row(table_row(table, 2), 0, false, 0); // from the porch into the picture at state 0
+	assert_row(table_row(table, 5), 7, false, 1); // and back to the start
 	assert_row(table->spare, 7, false, 1);
 	assert_valid(bench);
 	bench_destroy(bench);
@@ -180,9 +180,9 @@ static void test_count_sync(void **state)
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){0, 1, 2, 3, 4}, 5);
 	assert_row(table_row(table, 0), 0, false, 0);
-	assert_row(table_row(table, 3), 0, false, 1);   // cell 4 is sync
-	assert_row(table_row(table, 4), 0, true, 0);    // the last: clear, and cell 0 follows
-	assert_row(table->spare, 0, true, 0);           // states 5 to 7
+	assert_row(table_row(table, 3), 0, false, 1); // cell 4 is sync
+	assert_row(table_row(table, 4), 0, true, 0);  // the last: clear, and cell 0 follows
+	assert_row(table->spare, 0, true, 0);         // states 5 to 7
 	bench_destroy(bench);
 }
 
@@ -201,7 +201,8 @@ static void test_count_sync_full(void **state)
 	bench_destroy(bench);
 }
 
-// A counter that is cleared at once: only rows that are no cell's assert clear. Direct outputs, at rest but blanked there.
+// A counter that is cleared at once: only rows that are no cell's assert clear. Direct outputs, at rest but blanked
+// there.
 static void test_count_async(void **state)
 {
 	(void)state;
@@ -217,23 +218,18 @@ static void test_count_async(void **state)
 	assert_states(table, (const uint32_t[]){0, 1, 2}, 3);
 	assert_row(table_row(table, 0), 0, false, 0);
 	assert_row(table_row(table, 2), 0, false, 3);
-	assert_row(table->spare, 0, true, 2);   // state 3, one past the last
+	assert_row(table->spare, 0, true, 2); // state 3, one past the last
 	bench_destroy(bench);
 }
 
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-		cmocka_unit_test(test_registered),
-		cmocka_unit_test(test_direct),
-		cmocka_unit_test(test_lead),
-		cmocka_unit_test(test_field_signal),
-		cmocka_unit_test(test_field_lead),
-		cmocka_unit_test(test_period),
-		cmocka_unit_test(test_one_cell),
-		cmocka_unit_test(test_hold_and_start),
-		cmocka_unit_test(test_count_sync),
-		cmocka_unit_test(test_count_sync_full),
+		cmocka_unit_test(test_registered),  cmocka_unit_test(test_direct),
+		cmocka_unit_test(test_lead),        cmocka_unit_test(test_field_signal),
+		cmocka_unit_test(test_field_lead),  cmocka_unit_test(test_period),
+		cmocka_unit_test(test_one_cell),    cmocka_unit_test(test_hold_and_start),
+		cmocka_unit_test(test_count_sync),  cmocka_unit_test(test_count_sync_full),
 		cmocka_unit_test(test_count_async),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);

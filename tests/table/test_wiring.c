@@ -22,7 +22,7 @@ static void test_wiring_of(void **state)
 	assert_int_equal(wiring.advance, ADVANCE_COUNT);
 	assert_int_equal(wiring.clear, CLEAR_ASYNC);
 	assert_int_equal(wiring.outputs, OUTPUTS_DIRECT);
-	assert_int_equal(wiring.data_signals, SIGNAL(sync) | SIGNAL(burst));   // blank is decoded
+	assert_int_equal(wiring.data_signals, SIGNAL(sync) | SIGNAL(burst)); // blank is decoded
 	assert_int_equal(blank, 1);
 	bench_destroy(bench);
 }
@@ -30,7 +30,8 @@ static void test_wiring_of(void **state)
 static void test_chip_bytes(void **state)
 {
 	(void)state;
-	const struct part narrow = {.name = "XROM15", .address_pins = 15, .data_pins = 8}, wide = {.name = "XROM16", .address_pins = 16, .data_pins = 16};
+	const struct part narrow = {.name = "XROM15", .address_pins = 15, .data_pins = 8},
+					  wide = {.name = "XROM16", .address_pins = 16, .data_pins = 16};
 	assert_int_equal(chip_bytes(&(struct chip){.part = &narrow}), 32768);
 	assert_int_equal(chip_bytes(&(struct chip){.part = &wide}), 131072);
 }
