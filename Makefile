@@ -106,7 +106,7 @@ $(TEST_PROGRAMS): $(BUILD)/tests/%: tests/%.c
 $(BENCH_PROGRAMS) $(FUZZ_PROGRAMS): $(BUILD)/%: tools/%.c
 $(CLIENTS): $(LIBRARY) $(BUILD)/flags | $(PACKAGES)
 	@mkdir -p $(@D)
-	$(CC) $(FLAGS) -MMD -MP -MF $@.d $(LDFLAGS) -o $@ $(filter %.c,$^) $(LIBRARY) $(CLIENT_LIBRARIES) $(LIBRARIES)
+	$(CC) $(FLAGS) -MMD -MP -MF $@.d $(LDFLAGS) -o $@ $(firstword $(filter tests/%.c tools/%.c,$^)) $(LIBRARY) $(CLIENT_LIBRARIES) $(LIBRARIES)
 
 # What was compiled last time, so that other flags or a vanished source lead to a new build.
 $(BUILD)/flags: export STAMP = $(CC) $(FLAGS)

@@ -11,6 +11,10 @@
 // Where a diagnostic has no source, the program itself speaks.
 #define PROGRAM_NAME "scanlatch"
 
+// A message may quote the plan, which may hold anything; and a plan made to annoy can have more faults than anybody reads.
+#define MESSAGE_BYTES 400
+#define ENTRIES_LIMIT 1000
+
 struct remark {
 	struct remark *next;
 	bool is_hint;          // else a second place
@@ -43,7 +47,9 @@ struct diagnostics {
 	size_t error_count;
 	struct source_name *names; // the newest first
 	bool memory_failed;        // a fixed out-of-memory diagnostic stands after the entries
-	bool last_lost;            // the diagnostic added last is that one
+	bool last_lost;            // the diagnostic added last was not kept
+	size_t left_out;           // diagnostics beyond ENTRIES_LIMIT, counted only
+	bool system_left_out;      // one of them was a refusal of the system
 };
 
 struct diagnostics *diagnostics_create(void)
@@ -108,13 +114,29 @@ static bool reserve_entry(struct diagnostics *diagnostics)
 	return true;
 }
 
+// The longest prefix of a message that is not too long and does not cut a character of UTF-8.
+static size_t cut_length(const char *bytes, size_t length)
+{
+	if (length <= MESSAGE_BYTES)
+		return length;
+	size_t cut = MESSAGE_BYTES;
+	while (cut > 0 && ((unsigned char)bytes[cut] & 0xC0u) == 0x80u)
+		cut--;
+	return cut;
+}
+
 // In the arena; NULL when memory is out.
 __attribute__((format(printf, 2, 0)))
 static const char *format_message(struct arena *arena, const char *format, va_list arguments)
 {
 	struct text text = {0};
 	text_vprintf(&text, format, arguments);
-	const char *message = text.failed ? NULL : arena_copy(arena, text_string(&text), text.length);
+	const size_t length = cut_length(text_string(&text), text.length);
+	const char *message = NULL;
+	if (!text.failed && length == text.length)
+		message = arena_copy(arena, text_string(&text), length);
+	else if (!text.failed)
+		message = arena_format(arena, "%.*s ...", (int)length, text_string(&text));
 	text_release(&text);
 	return message;
 }
@@ -134,9 +156,22 @@ static bool add_entry(struct diagnostics *diagnostics, enum rule rule, struct pl
 	return true;
 }
 
+static void leave_out(struct diagnostics *diagnostics, const struct rule_row *row)
+{
+	const bool error = row->severity == SEVERITY_ERROR;
+	diagnostics->last_lost = true;
+	diagnostics->left_out++;
+	diagnostics->error_count += error;
+	diagnostics->system_left_out = diagnostics->system_left_out || (error && row->area == AREA_SYSTEM);
+}
+
 void diagnose(struct diagnostics *diagnostics, enum rule rule, struct place place, const char *format, ...)
 {
 	va_list arguments;
+	if (diagnostics->count >= ENTRIES_LIMIT) {
+		leave_out(diagnostics, rule_row(rule));
+		return;
+	}
 	va_start(arguments, format);
 	const char *message = format_message(diagnostics->arena, format, arguments);
 	va_end(arguments);
@@ -205,7 +240,7 @@ bool diagnostics_has_system_error(const struct diagnostics *diagnostics)
 		if (row->area == AREA_SYSTEM && row->severity == SEVERITY_ERROR)
 			return true;
 	}
-	return diagnostics->memory_failed;
+	return diagnostics->memory_failed || diagnostics->system_left_out;
 }
 
 static int compare_numbers(size_t left, size_t right)
@@ -292,5 +327,7 @@ void diagnostics_print(const struct diagnostics *diagnostics, struct text *out, 
 		put_entry(out, sorted[index], &cursor, colour);
 	if (diagnostics->memory_failed)
 		put_entry(out, &out_of_memory, &cursor, colour);
+	if (diagnostics->left_out > 0)
+		text_printf(out, "%s: %zu more are left out\n", PROGRAM_NAME, diagnostics->left_out);
 	free(sorted);
 }

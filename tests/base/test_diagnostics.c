@@ -114,10 +114,41 @@ static void counts_tell_errors_from_notices(void **state)
 	assert_int_equal(diagnostics_rule(diagnostics, 0), RULE_UNUSED_LINE);
 	assert_int_equal(diagnostics_rule(diagnostics, 1), RULE_WIRE_DOUBLED);
 	assert_false(diagnostics_has_system_error(diagnostics));
-	diagnose(diagnostics, RULE_WRITE_FAILED, (struct place){0}, "cannot write");
+	diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
 	assert_true(diagnostics_has_system_error(diagnostics));
 	diagnostics_destroy(diagnostics);
 	diagnostics_destroy(NULL);
+}
+
+// A message of 400 two-byte characters is cut after 200 of them; the 1,001st diagnostic and later ones are counted.
+static void what_nobody_reads_is_cut(void **state)
+{
+	(void)state;
+	struct source source = source_of("a", "b\n");
+	struct diagnostics *diagnostics = diagnostics_create();
+	char message[801] = "";
+	for (size_t index = 0; index < 400; index++)
+		memcpy(message + 2 * index, "\xC3\xA4", 3);
+	diagnose(diagnostics, RULE_YAML_SYNTAX, at(&source, 0, 0), "%s", message);
+	message[400] = '\0';
+	struct text wanted = {0}, found = {0};
+	text_printf(&wanted, "a: error: %s ... [yaml-syntax]\n", message);
+	diagnostics_print(diagnostics, &found, false);
+	assert_string_equal(text_string(&found), text_string(&wanted));
+	text_release(&wanted);
+	text_release(&found);
+	for (size_t index = 1; index < 1003; index++)
+		diagnose(diagnostics, RULE_YAML_SYNTAX, at(&source, 0, 0), "again");
+	diagnose(diagnostics, RULE_OUT_OF_MEMORY, at(&source, 0, 0), "memory is out");
+	diagnose_hint(diagnostics, "of what is not there");
+	assert_int_equal(diagnostics_error_count(diagnostics), 1004);
+	assert_int_equal(diagnostics_count(diagnostics), 1000);
+	assert_true(diagnostics_has_system_error(diagnostics));
+	diagnostics_print(diagnostics, &found, false);
+	assert_non_null(strstr(text_string(&found), "again [yaml-syntax]\nscanlatch: 4 more are left out\n"));
+	assert_null(strstr(text_string(&found), "not there"));
+	text_release(&found);
+	diagnostics_destroy(diagnostics);
 }
 
 static void a_place_may_be_less_than_a_character(void **state)
@@ -125,11 +156,11 @@ static void a_place_may_be_less_than_a_character(void **state)
 	(void)state;
 	struct source unreadable = {.name = "gone.yaml"};
 	struct diagnostics *diagnostics = diagnostics_create();
-	diagnose(diagnostics, RULE_WRITE_FAILED, (struct place){0}, "no room in 'out'");
+	diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "no room in 'out'");
 	diagnose(diagnostics, RULE_FILE_UNREADABLE, at(&unreadable, 0, 0), "no such file");
 	diagnose(diagnostics, RULE_FILE_EMPTY, at(&unreadable, 4, 2), "bytes are not there");
 	assert_prints(diagnostics, false,
-	              "scanlatch: error: no room in 'out' [write-failed]\n"
+	              "scanlatch: error: no room in 'out' [out-of-memory]\n"
 	              "gone.yaml: error: no such file [file-unreadable]\n"
 	              "gone.yaml:4:2: error: bytes are not there [file-empty]\n");
 }
@@ -286,6 +317,7 @@ int main(void)
 		cmocka_unit_test(remarks_belong_to_the_last_added),
 		cmocka_unit_test(diagnostics_come_in_file_order),
 		cmocka_unit_test(counts_tell_errors_from_notices),
+		cmocka_unit_test(what_nobody_reads_is_cut),
 		cmocka_unit_test(a_place_may_be_less_than_a_character),
 		cmocka_unit_test(severity_words_are_coloured),
 		cmocka_unit_test(columns_count_characters),
