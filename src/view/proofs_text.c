@@ -195,8 +195,6 @@ static void detail_codes(struct report *report)
 static void put_details(struct report *report, enum proof_kind kind)
 {
 	const struct proofs *proofs = report->proofs;
-	if (kind == PROOF_SIGNALS)
-		detail_codes(report);
 	if (kind == PROOF_SWEEP) {
 		detail_sweeps(report);
 	} else if (kind == PROOF_GLITCHES) {
@@ -207,6 +205,8 @@ static void put_details(struct report *report, enum proof_kind kind)
 	} else if (proof_failed(proofs, kind)) {
 		detail_counterexample(report, kind);
 	}
+	if (kind == PROOF_SIGNALS)
+		detail_codes(report);
 }
 
 static void put_proof(struct report *report, enum proof_kind kind)

@@ -36,6 +36,7 @@ static void a_good_plan_has_a_line_for_each_proof(void **state)
 	assert_report(&harbour, false,
 		"pass  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x8000 after 16.688 ms\n"
 		"pass  signals   132310 pin levels and 17280 held addresses as planned\n"
+		"      load is asserted in codes of field top: 1 4 5\n"
 		"pass  colour    228 cycles a line; the phase repeats every line and every frame; asked: every line\n"
 		"pass  power-up  all 65536 states come home, the longest way 1 cell (1/101 line) from state 0x0000\n"
 		"pass  upset     423392 flips of one bit: home after 101 cells at worst (bit 14 in line 2, cell 98),\n"
@@ -70,6 +71,7 @@ static void what_the_plan_does_not_ask_is_none(void **state)
 	assert_report(&harbour, false,
 		"pass  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x8000 after 16.688 ms\n"
 		"pass  signals   132310 pin levels as planned\n"
+		"      load is asserted in codes of field top: 1 4 5\n"
 		"none  colour    the plan has no subcarrier\n"
 		"pass  power-up  all 65536 states come home: all are states of the frame\n"
 		"pass  upset     423392 flips of one bit: home at once; the raster does not slip\n"
@@ -117,6 +119,7 @@ static void a_fault_that_names_a_line_says_how_lines_are_counted(void **state)
 		"      sync is low, expected high\n"
 		"      at line 17 (border), cell 3 (sync); cell 1720 of the frame\n"
 		"      row of state 0x06B7, which sets sync: byte 0x5F at address 0x106B7 of chip rom0\n"
+		"      load is asserted in codes of field top: 1 4 5\n"
 		"FAIL  colour    not judged: the frame does not close\n"
 		"FAIL  power-up  not judged: the frame does not close\n"
 		"miss  upset     not judged: the frame does not close\n"
@@ -137,7 +140,8 @@ static void several_banks_are_named(void **state)
 		"pass  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x8000 after 16.688 ms in each\n"
 		"                of 4 banks\n");
 	assert_proof(&harbour, PROOF_SIGNALS,
-		"pass  signals   132310 pin levels and 17280 held addresses as planned in 4 banks\n");
+		"pass  signals   132310 pin levels and 17280 held addresses as planned in 4 banks\n"
+		"      load is asserted in codes of field top: 1 4 5\n");
 	assert_proof(&harbour, PROOF_POWER_UP,
 		"pass  power-up  all 65536 states in 4 banks come home, the longest way 1 cell (1/101 line) from\n"
 		"                state 0x0000 in bank 3\n");
@@ -148,7 +152,8 @@ static void several_banks_are_named(void **state)
 		"FAIL  signals   not all of 132310 pin levels and 17280 held addresses are as planned in 4 banks\n"
 		"      sync is low, expected high\n"
 		"      at line 17 (border), cell 3 (sync); cell 1720 of the frame, bank 2\n"
-		"      row of state 0x06B7, which sets sync: byte 0x5F at address 0x106B7 of chip rom0\n");
+		"      row of state 0x06B7, which sets sync: byte 0x5F at address 0x106B7 of chip rom0\n"
+		"      load is asserted in codes of field top: 1 4 5\n");
 }
 
 // All lines alike: the states run through one line only.
@@ -193,7 +198,8 @@ static void a_long_detail_wraps_two_further_in(void **state)
 		"      sync is low, expected high: top is 0x5, which stands for low elsewhere in the frame of the\n"
 		"        harbour's board\n"
 		"      at line 17 (border), cell 3 (sync); cell 1720 of the frame\n"
-		"      row of state 0x06B7, which sets sync: byte 0x5F at address 0x106B7 of chip rom0\n");
+		"      row of state 0x06B7, which sets sync: byte 0x5F at address 0x106B7 of chip rom0\n"
+		"      load is asserted in codes of field top: 1 4 5\n");
 }
 
 // 909 ticks a line are 909/4 cycles; four lines, or two frames of 119079/2 cycles, are whole. Line 1 begins with cell 101.
