@@ -125,6 +125,18 @@ static bool keep_image(scanlatch_images *images, size_t chip, const struct image
 	return false;
 }
 
+// The proofs read open pins as low; if the bytes differ where they are high, that is no more than half of the story.
+static void notice_open_pin(const struct chip *chip, const struct image *image, struct place place, struct diagnostics *diagnostics)
+{
+	unsigned pin;
+	size_t offset;
+	if (!image_reads_open_pin(chip, image, &pin, &offset))
+		return;
+	diagnose(diagnostics, RULE_IMAGE_OPEN_PIN, place, "chip \"%s\" answers differently while its open pin A%u is high, first for the byte at 0x%zX",
+	         chip->label, pin, offset);
+	diagnose_hint(diagnostics, "the proofs hold for A%u low: tie it low on the board", pin);
+}
+
 bool scanlatch_images_read(scanlatch_images *images, const char *label, const char *file, const void *bytes, size_t length,
                            scanlatch_messages *messages)
 {
@@ -143,6 +155,8 @@ bool scanlatch_images_read(scanlatch_images *images, const char *label, const ch
 	const bool good = image_is_hex(bytes, length, image.length)
 	                      ? decode_hex(chip, place, bytes, length, &image, messages->diagnostics)
 	                      : copy_binary(chip, place, bytes, length, &image, messages->diagnostics);
+	if (good && images->images[index].bytes == NULL)
+		notice_open_pin(chip, &image, place, messages->diagnostics);
 	return good && keep_image(images, index, &image, place, messages->diagnostics);
 }
 
