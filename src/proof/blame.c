@@ -67,6 +67,9 @@ struct counterexample blame_next(const struct trial *trial, uint32_t cell, uint3
 {
 	struct counterexample found = {.present = true, .bank = trial->bank, .cell = cell, .signal = SIZE_MAX};
 	found.state = trial->lap.states[cell];
+	// An asynchronous clear is read in the row that the counter passes through after the cell.
+	if (trial->wiring.advance == ADVANCE_COUNT && trial->wiring.clear == CLEAR_ASYNC)
+		found.state = (found.state + 1) & (((uint32_t)1 << trial->wiring.state_bits) - 1);
 	blame_bits(trial, next_kind(trial), wrong_bits, &found);
 	return found;
 }

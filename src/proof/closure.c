@@ -9,7 +9,8 @@ static const char *back_too_early(const struct trial *trial, const char *bytes)
 {
 	const struct lap *lap = &trial->lap;
 	return arena_format(trial->proofs->arena, "the next state is 0x%" PRIX32 " (%s), the frame's first: it came back after %"
-	                    PRIu32 " cells, expected after %s%" PRIu32, lap->states[0], bytes, lap->return_cells,
+	                    PRIu32 " cell%s, expected after %s%" PRIu32, lap->states[0], bytes, lap->return_cells,
+	                    lap->return_cells == 1 ? "" : "s",
 	                    trial->period < trial->timeline->cell_count ? "a multiple of " : "", trial->period);
 }
 

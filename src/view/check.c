@@ -1,8 +1,10 @@
 #include "view/check.h"
 
 #include <inttypes.h>
+#include <string.h>
 
 #include "base/arena.h"
+#include "base/excerpt.h"
 #include "base/text.h"
 #include "layout/timeline.h"
 #include "proof/proof.h"
@@ -116,7 +118,9 @@ static void put_line(struct text *out, const struct timeline *timeline, size_t t
 	                              put_region_cell, &view};
 	text_printf(out, "\nline \"%s\": ", view.type->name);
 	text_put_count(out, view.laid->cells, "cell", "cells");
-	text_printf(out, ", %" PRId64 " ticks, ", view.laid->ticks);
+	text_put(out, ", ");
+	text_put_count(out, (uint64_t)view.laid->ticks, "tick", "ticks");
+	text_put(out, ", ");
 	put_microseconds(out, &timeline->plan->clock, fraction_whole(view.laid->ticks));
 	text_put(out, " us; ");
 	text_put_count(out, uses, "line", "lines");
@@ -142,8 +146,10 @@ static void put_head(struct text *out, const struct plan *plan)
 {
 	const struct clock *clock = &plan->clock;
 	text_put(out, plan->name);
-	if (plan->note[0] != '\0')
-		text_printf(out, ": %s", plan->note);
+	if (plan->note[0] != '\0') {
+		text_put(out, ": ");
+		excerpt_put_printable(plan->note, strlen(plan->note), out);
+	}
 	text_put(out, "\nclock: ");
 	put_frequency(out, clock->master_hz);
 	if (clock->has_accuracy) {
@@ -151,7 +157,8 @@ static void put_head(struct text *out, const struct plan *plan)
 		text_put_rounded(out, clock->accuracy_ppm, 6);
 		text_put(out, " ppm");
 	}
-	text_printf(out, "; a cell is %" PRId64 " ticks", clock->cell_ticks);
+	text_put(out, "; a cell is ");
+	text_put_count(out, (uint64_t)clock->cell_ticks, "tick", "ticks");
 	if (clock->stretch_ticks > 0)
 		text_printf(out, ", stretched %" PRId64, clock->cell_ticks + clock->stretch_ticks);
 	text_put(out, "\n");
@@ -167,7 +174,10 @@ static void put_frame(struct text *out, const struct timeline *timeline)
 	struct fraction seconds, rate;
 	text_put(out, "\nframe: ");
 	text_put_count(out, timeline->line_count, "line", "lines");
-	text_printf(out, ", %" PRIu32 " cells, %" PRId64 " ticks", timeline->cell_count, timeline->tick_count);
+	text_put(out, ", ");
+	text_put_count(out, timeline->cell_count, "cell", "cells");
+	text_put(out, ", ");
+	text_put_count(out, (uint64_t)timeline->tick_count, "tick", "ticks");
 	if (seconds_of_ticks(&timeline->plan->clock, timeline->tick_count, &seconds) &&
 	    fraction_divide(fraction_whole(1), seconds, &rate)) {
 		text_put(out, ", ");

@@ -51,11 +51,15 @@ static void put_chips(struct text *out, const struct plan *plan, const struct im
 
 static void put_heading(struct text *out, const struct plan *plan)
 {
-	text_printf(out, "# %s: every row of the frame\n# line type, line, cell, region, state, word (%s, then the levels of", plan->name,
+	text_printf(out, "# %s: every row of the frame\n# line type, line, cell, region, state, word (%s", plan->name,
 	            plan->machine.advance == ADVANCE_TABLE ? "next state" : "clear");
-	for (size_t signal = 0; signal < plan->signal_count; signal++)
-		if (signal_is_data(&plan->signals[signal]))
-			text_printf(out, " %s", plan->signals[signal].name);
+	bool first = true;
+	for (size_t signal = 0; signal < plan->signal_count; signal++) {
+		if (!signal_is_data(&plan->signals[signal]))
+			continue;
+		text_printf(out, "%s %s", first ? ", then the levels of" : "", plan->signals[signal].name);
+		first = false;
+	}
 	text_put(out, "), then address:byte in");
 	for (size_t chip = 0; chip < plan->chip_count; chip++)
 		text_printf(out, " %s", plan->chips[chip].label);
