@@ -1,6 +1,6 @@
-// The parts of a loop sequencer, written by hand from what the parts do: memories, the latch or counter that holds the state, the latch
-// of the outputs, the decoder, and the clock that makes a cell longer when the stretch pin says so. A board that wires
-// them is made by loop_board.py. Two units of time are one tick of the master clock.
+// The parts of a loop sequencer, written by hand from what the parts do: memories, the latch or counter that holds
+// the state, the latch of the outputs, the decoder, and the clock that makes a cell longer when the stretch pin says
+// so. A board that wires them is made by loop_board.py. Two units of time are one tick of the master clock.
 
 // An EEPROM: its output follows its address.
 module memory #(parameter ADDRESS_PINS = 1, DATA_PINS = 8, FILE = "") (
@@ -12,7 +12,8 @@ module memory #(parameter ADDRESS_PINS = 1, DATA_PINS = 8, FILE = "") (
 	assign data = words[address];
 endmodule
 
-// Edge-triggered D latches, as many as asked. What they hold when the power comes on is given; x where it does not matter.
+// Edge-triggered D latches, as many as asked. What they hold when the power comes on is given; x where it does not
+// matter.
 module latch #(parameter BITS = 1, POWER_UP = {BITS{1'bx}}) (
 	input clock,
 	input [BITS-1:0] d,
@@ -22,8 +23,8 @@ module latch #(parameter BITS = 1, POWER_UP = {BITS{1'bx}}) (
 	always @(posedge clock) q <= d;
 endmodule
 
-// A binary counter of four bits with the function table of the 74x161 (clear at once) or 74x163 (clear with the clock edge): clear goes
-// before load, load before counting, and counting takes both enables. Function tables: from memory.
+// A binary counter of four bits with the function table of the 74x161 (clear at once) or 74x163 (clear with the clock
+// edge): clear goes before load, load before counting, and counting takes both enables. Function tables: from memory.
 module counter_4 #(parameter ASYNCHRONOUS = 0, POWER_UP = 0) (
 	input clock, clear_n, load_n, enp, ent,
 	input [3:0] d,
@@ -86,7 +87,8 @@ module delay #(parameter CELLS = 1) (
 	endgenerate
 endmodule
 
-// An edge at the end of every cell. A cell that has lasted CELL ticks goes on for STRETCH more if it is to be stretched.
+// An edge at the end of every cell. A cell that has lasted CELL ticks goes on for STRETCH more if it is to be
+// stretched.
 module cell_clock #(parameter CELL = 1, STRETCH = 0) (
 	input stretched,
 	output reg clock
@@ -99,7 +101,8 @@ module cell_clock #(parameter CELL = 1, STRETCH = 0) (
 	end
 endmodule
 
-// A line for each cell, half a tick after it has begun: its first tick, the state, the levels of all pins. Ends after CELLS of them.
+// A line for each cell, half a tick after it has begun: its first tick, the state, the levels of all pins. Ends after
+// CELLS of them.
 module recorder #(parameter BITS = 1, PINS = 1, CELLS = 1) (
 	input clock,
 	input [BITS-1:0] state,

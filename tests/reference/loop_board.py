@@ -1,10 +1,11 @@
 """Puts the parts of loop.v on a board as a plan wires them, and compares what a simulation of it did with the plan.
 
     loop_board.py make PLAN IMAGES OUT        writes OUT/board.v and OUT/LABEL.mem for each image IMAGES/NAME.LABEL.bin
-    loop_board.py compare PLAN TRACE [SKIP]   TRACE must be the plan's timeline, cell by cell, for more than a frame. It may begin
-                                              with up to SKIP cells before the first state (none if left out)
+    loop_board.py compare PLAN TRACE [SKIP]   TRACE must be the plan's timeline, cell by cell, for more than a frame.
+                                              It may begin with up to SKIP cells before the first state (0 if left out)
 
-Wiring and timeline come from the plan's text alone, by the reader in oracle_plan.py; nothing but the memories' contents comes from images.
+Wiring and timeline come from the plan's text alone, by the reader in oracle_plan.py; nothing but the memories' contents
+comes from images.
 """
 
 import os
@@ -50,7 +51,8 @@ def chip_lines(number, chip):
 
 def data_pin(chips, wire):
 	"""The data pin that carries a bit of the word."""
-	return next(f"data{number}[{pin}]" for number, chip in enumerate(chips) for pin, name in enumerate(chip.data) if name == wire)
+	return next(f"data{number}[{pin}]" for number, chip in enumerate(chips) for pin, name in enumerate(chip.data)
+		if name == wire)
 
 
 def state_lines(plan, chips):
@@ -90,7 +92,8 @@ def clock_lines(plan):
 	pin = f"{'!' if signal.active_low else ''}pins[{plan.signals.index(signal)}]"
 	yield "\twire stretched;"
 	yield f"\tdelay #(.CELLS({signal.lead})) stretch_delay (.clock(clock), .d({pin}), .q(stretched));"
-	yield f"\tcell_clock #(.CELL({clock.cell}), .STRETCH({clock.stretch})) cells (.stretched(stretched), .clock(clock));"
+	yield (f"\tcell_clock #(.CELL({clock.cell}), .STRETCH({clock.stretch}))"
+		" cells (.stretched(stretched), .clock(clock));")
 
 
 def board_lines(plan, chips):

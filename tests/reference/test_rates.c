@@ -1,4 +1,5 @@
-// Rates and cycles as the program reckons them, against published constants and what follows from them exactly. Sources:
+// Rates and cycles as the program reckons them, against published constants and what follows from them exactly.
+// Sources:
 //   S170   SMPTE 170M-2004, clause 11 and table 2 (also Rec. ITU-R BT.1700 (2005), annex 2)
 //   S244   SMPTE 244M-2003, 4.1.1 and tables 4 and 5
 //   B470   Rec. ITU-R BT.470-6 (1998), annex 1, tables 1 and 1-1
@@ -31,7 +32,10 @@ static const char plan_text[] =
 	"name: rates\n"
 	"clock: { master: %s, cell: 1 tick%s }\n"
 	"signals: { sync: { role: composite sync, active: low } }\n"
-	"lines: { only: { cells: %u, regions: [ { region: sync, time: %s, assert: [sync] }, { region: rest, fill: true } ] } }\n"
+	"lines:\n"
+	"  only:\n"
+	"    cells: %u\n"
+	"    regions: [ { region: sync, time: %s, assert: [sync] }, { region: rest, fill: true } ]\n"
 	"frame: [ { repeat: %u, line: only } ]\n"
 	"machine: { form: loop, state: 20 bits }\n"
 	"chips: { part: 27C080 }\n";
@@ -102,7 +106,8 @@ static long long sync_cells(json_t *document)
 static void line_rate_of_525_lines(void **state)
 {
 	(void)state;
-	// fH = 4.5 MHz / 286 = fsc × 2/455, fsc = 5 MHz × 63/88 = 315/88 MHz (S170 11.1, 11.2): 15 734.265 734… Hz = 2 250 000/143.
+	// fH = 4.5 MHz / 286 = fsc × 2/455, fsc = 5 MHz × 63/88 = 315/88 MHz (S170 11.1, 11.2): 15 734.265 734… Hz = 2
+	// 250 000/143.
 	assert_rate(check("4.5 MHz", "", 286, 1), "2250000/143");
 	assert_rate(check("315/88 MHz", "", 455, 1), "1125000/143");
 	assert_rate(check("315/44 MHz", "", 455, 1), "2250000/143");
@@ -165,12 +170,18 @@ static void rates_of_monitor_modes(void **state)
 		unsigned pixels, lines;
 		double line_khz, frame_hz;
 	} modes[] = {
-		{"25.175 MHz", 800, 525, 31.469, 59.940}, {"31.5 MHz", 832, 520, 37.861, 72.809}, {"31.5 MHz", 840, 500, 37.500, 75.000},
-		{"36 MHz", 1024, 625, 35.156, 56.250},    {"40 MHz", 1056, 628, 37.879, 60.317},  {"65 MHz", 1344, 806, 48.363, 60.004},
+		{"25.175 MHz", 800, 525, 31.469, 59.940},
+		{"31.5 MHz", 832, 520, 37.861, 72.809},
+		{"31.5 MHz", 840, 500, 37.500, 75.000},
+		{"36 MHz", 1024, 625, 35.156, 56.250},
+		{"40 MHz", 1056, 628, 37.879, 60.317},
+		{"65 MHz", 1344, 806, 48.363, 60.004},
 	};
-	for (size_t mode = 0; mode < sizeof modes / sizeof *modes; mode++) {
-		assert_published(check_sync(modes[mode].clock, "", modes[mode].pixels, 1, "96 ticks"), modes[mode].line_khz * 1000, 1);
-		assert_published(check_sync(modes[mode].clock, "", modes[mode].pixels, modes[mode].lines, "96 ticks"), modes[mode].frame_hz, 1e-3);
+	for (size_t index = 0; index < sizeof modes / sizeof *modes; index++) {
+		const char *clock = modes[index].clock;
+		const unsigned pixels = modes[index].pixels, lines = modes[index].lines;
+		assert_published(check_sync(clock, "", pixels, 1, "96 ticks"), modes[index].line_khz * 1000, 1);
+		assert_published(check_sync(clock, "", pixels, lines, "96 ticks"), modes[index].frame_hz, 1e-3);
 	}
 }
 
@@ -178,7 +189,8 @@ static void colour_of_525_lines(void **state)
 {
 	(void)state;
 	static const char colour[] = ", subcarrier: master / 4";
-	// 455/2 cycles a line (S170 11.2). With 525 lines a frame the phase takes two frames, which are the four fields of S170.
+	// 455/2 cycles a line (S170 11.2). With 525 lines a frame the phase takes two frames, which are the four fields
+	// of S170.
 	assert_colour(check(FOUR_525, colour, 910, 525), "455/2", 2, 2);
 	assert_colour(check("13.5 MHz", ", subcarrier: 315/88 MHz", 858, 525), "455/2", 2, 2);
 	// 227.5 × 262 is whole: it repeats each frame. × 263 it is not. Derived.
@@ -192,7 +204,8 @@ static void colour_of_625_lines(void **state)
 {
 	(void)state;
 	static const char colour[] = ", subcarrier: 4.43361875 MHz";
-	// 1135/4 + 1/625 = 283.7516 cycles a line (B1700 table 1, B470 2.11b), and eight fields, four frames, until it repeats (B1700 figure 8).
+	// 1135/4 + 1/625 = 283.7516 cycles a line (B1700 table 1, B470 2.11b), and eight fields, four frames, until it
+	// repeats (B1700 figure 8).
 	assert_colour(check("27 MHz", colour, 1728, 625), "709379/2500", 2500, 4);
 	// 1135 and 1136 ticks of 4 × subcarrier: 283.75 and 284 cycles. 283.75 × 312 is whole, × 313 is not. Derived.
 	assert_colour(check(FOUR_625, colour, 1135, 312), "1135/4", 4, 1);
@@ -217,8 +230,8 @@ static void line_periods(void **state)
 static void widths_in_samples(void **state)
 {
 	(void)state;
-	// S170's times come out at the samples that S244 tables 4 and 5 give: a sync of 67.0 samples, an equalising pulse of 33.0, a
-	// serration of 67.0, a broad pulse of 388.0 (455 - 67), nine cycles of burst 36.
+	// S170's times come out at the samples that S244 tables 4 and 5 give: a sync of 67.0 samples, an equalising pulse
+	// of 33.0, a serration of 67.0, a broad pulse of 388.0 (455 - 67), nine cycles of burst 36.
 	assert_int_equal(sync_cells(check_sync(FOUR_525, "", 910, 1, "4.70 us")), 67);
 	assert_int_equal(sync_cells(check_sync(FOUR_525, "", 910, 1, "2.30 us")), 33);
 	assert_int_equal(sync_cells(check_sync(FOUR_525, "", 910, 1, "27.1 us")), 388);

@@ -1,4 +1,5 @@
-// The conversion of an image file between binary and Intel HEX, and nothing else, to be timed against another program's.
+// The conversion of an image file between binary and Intel HEX, and nothing else, to be timed against another
+// program's.
 //
 //     hex_convert to-hex|to-binary FROM TO
 #include <stdio.h>
@@ -44,7 +45,8 @@ static int to_binary(const char *bytes, size_t length, const char *path)
 	if (image == NULL)
 		return fail("memory is out");
 	memset(image, 0xFF, CAPACITY);
-	const int status = hex_decode(bytes, length, image, CAPACITY, &result) != HEX_OK ? fail("no Intel HEX") : store(path, image, CAPACITY);
+	const bool good = hex_decode(bytes, length, image, CAPACITY, &result) == HEX_OK;
+	const int status = good ? store(path, image, CAPACITY) : fail("no Intel HEX");
 	free(image);
 	return status;
 }
@@ -58,7 +60,8 @@ int main(int count, char **arguments)
 	struct arena *arena = arena_create();
 	if (arena == NULL || file_read(arena, arguments[2], FILE_LIMIT, &bytes, &length) != READ_OK)
 		return fail("cannot read");
-	const int status = strcmp(arguments[1], "to-hex") == 0 ? to_hex(bytes, length, arguments[3]) : to_binary(bytes, length, arguments[3]);
+	const bool encodes = strcmp(arguments[1], "to-hex") == 0;
+	const int status = encodes ? to_hex(bytes, length, arguments[3]) : to_binary(bytes, length, arguments[3]);
 	arena_destroy(arena);
 	return status;
 }

@@ -1,5 +1,6 @@
-// Runs a command several times and prints the median of its times from start to exit, the median of the processor's time in it (a machine
-// with other work to do lets the first grow, not the second), and the most memory that a run took.
+// Runs a command several times and prints the median of its times from start to exit, the median of the processor's
+// time in it (a machine with other work to do lets the first grow, not the second), and the most memory that a run
+// took.
 //
 //     time_command RUNS COMMAND [ARGUMENT …]     prints "SECONDS PROCESSOR_SECONDS KIBIBYTES"
 //

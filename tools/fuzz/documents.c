@@ -6,9 +6,10 @@
 #include "plan/document.h"
 
 static const char *const words[] = {
-	"&a", "*a", "&b", "*b", "!tag", "!!str", "<<", "[", "]", "{", "}", ",", ":", ": ", "- ", "? ", "|", ">", "|-", ">+", "'", "\"", "---", "...",
-	"%YAML 1.2", "%TAG", "\\x00", "\\u0000", "\\uD800", "\\U0010FFFF", "~", "null", "#", "\t", "  ", "\n", "\r\n", "\xC2\x85",
-	"\xE2\x80\xA8", "\xEF\xBB\xBF", "\xC0\x80", "\xED\xA0\x80", "\xF4\x90\x80\x80", "\xFF", NULL,
+	"&a", "*a", "&b", "*b", "!tag", "!!str", "<<", "[", "]", "{", "}", ",", ":", ": ", "- ", "? ", "|", ">",
+	"|-", ">+", "'", "\"", "---", "...", "%YAML 1.2", "%TAG", "\\x00", "\\u0000", "\\uD800", "\\U0010FFFF", "~",
+	"null", "#", "\t", "  ", "\n", "\r\n", "\xC2\x85", "\xE2\x80\xA8", "\xEF\xBB\xBF", "\xC0\x80",
+	"\xED\xA0\x80", "\xF4\x90\x80\x80", "\xFF", NULL,
 };
 
 // A node on the way through the tree.
@@ -85,8 +86,10 @@ static bool judge(void *context, const uint8_t *bytes, size_t length)
 	FUZZ_REQUIRE(!text.failed);
 	FUZZ_REQUIRE((root == NULL) == (diagnostics_error_count(diagnostics) > 0));
 	FUZZ_REQUIRE(root != NULL || !diagnostics_has_system_error(diagnostics));
-	for (size_t index = 0; index < text.length; index++)
-		FUZZ_REQUIRE((unsigned char)text.bytes[index] >= ' ' || text.bytes[index] == '\n' || text.bytes[index] == '\033');
+	for (size_t index = 0; index < text.length; index++) {
+		const unsigned char byte = (unsigned char)text.bytes[index];
+		FUZZ_REQUIRE(byte >= ' ' || byte == '\n' || byte == '\033');
+	}
 	if (root != NULL)
 		require_tree(&source, root);
 	text_release(&text);

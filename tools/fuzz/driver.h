@@ -1,10 +1,13 @@
-// The driver of a fuzzer: mutates inputs and hands each to a judge, which aborts when something is wrong. Same seed, same inputs.
+// The driver of a fuzzer: mutates inputs and hands each to a judge, which aborts when something is wrong. Same seed,
+// same inputs.
 //
-//     PROGRAM [--seed N] [--seconds N] [--runs N] [--last FILE] CORPUS…     mutates the files of the corpus until time or runs are up
-//     PROGRAM --replay FILE…                                               judges the files as they are
+//     PROGRAM [--seed N] [--seconds N] [--runs N] [--last FILE] CORPUS…
+//         mutates the files of the corpus until time or runs are up
+//     PROGRAM --replay FILE…
+//         judges the files as they are
 //
-// Every input is written to --last before it is judged, so that one that crashes is there to look at.
-// With clang and -DFUZZ_LIBFUZZER -fsanitize=fuzzer the same source is a target for libFuzzer, which then does all this.
+// Every input is written to --last before it is judged, so that one that crashes is there to look at. With clang and
+// -DFUZZ_LIBFUZZER -fsanitize=fuzzer the same source is a target for libFuzzer, which then does all this.
 #ifndef SCANLATCH_FUZZ_DRIVER_H
 #define SCANLATCH_FUZZ_DRIVER_H
 
@@ -21,8 +24,8 @@
 #define FUZZ_CORPUS 512u        // inputs that are kept
 
 struct fuzz {
-	// Judges an input; aborts when something is wrong. True if the input is worth mutating further. `context` is what create gave, made
-	// once for all inputs; NULL without create.
+	// Judges an input; aborts when something is wrong. True if the input is worth mutating further. `context` is what
+	// create gave, made once for all inputs; NULL without create.
 	bool (*judge)(void *context, const uint8_t *bytes, size_t length);
 	void *(*create)(void);
 	void (*destroy)(void *context);
@@ -150,9 +153,14 @@ static void fuzz_splice(struct fuzz_input *work, size_t offset, size_t removed, 
 	work->length = offset + length + rest;
 }
 
+static bool fuzz_is_digit(uint8_t byte)
+{
+	return byte >= '0' && byte <= '9';
+}
+
 static bool fuzz_is_word(uint8_t byte)
 {
-	return (byte >= '0' && byte <= '9') || (byte >= 'a' && byte <= 'z') || (byte >= 'A' && byte <= 'Z') || byte == '_';
+	return fuzz_is_digit(byte) || (byte >= 'a' && byte <= 'z') || (byte >= 'A' && byte <= 'Z') || byte == '_';
 }
 
 // A word of the text at or after a random place: its bounds. False if there is none.
@@ -162,9 +170,9 @@ static bool fuzz_word_at_random(struct fuzz_run *run, size_t *first, size_t *end
 	size_t offset = fuzz_below(&run->random, work->length + 1);
 	for (size_t tried = 0; tried <= work->length; tried++, offset++) {
 		offset %= work->length + 1;
-		if (offset == work->length || !fuzz_is_word(work->bytes[offset]) || (offset > 0 && fuzz_is_word(work->bytes[offset - 1])))
+		if (offset == work->length || !fuzz_is_word(work->bytes[offset]))
 			continue;
-		if (number && !(work->bytes[offset] >= '0' && work->bytes[offset] <= '9'))
+		if ((offset > 0 && fuzz_is_word(work->bytes[offset - 1])) || (number && !fuzz_is_digit(work->bytes[offset])))
 			continue;
 		*first = *end = offset;
 		while (*end < work->length && fuzz_is_word(work->bytes[*end]))
@@ -182,9 +190,10 @@ static void fuzz_put_text(struct fuzz_run *run, size_t first, size_t end, const 
 static void fuzz_change_number(struct fuzz_run *run)
 {
 	static const char *const numbers[] = {
-		"0", "1", "2", "3", "7", "15", "16", "24", "25", "63", "64", "65", "255", "256", "65535", "65536", "1000000", "1048576", "16777216",
-		"16777217", "2147483647", "2147483648", "4294967295", "4294967296", "9223372036854775807", "9223372036854775808",
-		"18446744073709551616", "0x0", "0xFF", "0xFFFFFFFFFFFFFFFF", "-1", "0.5", "1/3", "4.7", "1e3", "00", "1.", ".5", "1_000",
+		"0", "1", "2", "3", "7", "15", "16", "24", "25", "63", "64", "65", "255", "256", "65535", "65536", "1000000",
+		"1048576", "16777216", "16777217", "2147483647", "2147483648", "4294967295", "4294967296",
+		"9223372036854775807", "9223372036854775808", "18446744073709551616", "0x0", "0xFF", "0xFFFFFFFFFFFFFFFF",
+		"-1", "0.5", "1/3", "4.7", "1e3", "00", "1.", ".5", "1_000",
 	};
 	size_t first, end;
 	char text[32];
@@ -195,10 +204,17 @@ static void fuzz_change_number(struct fuzz_run *run)
 		return;
 	}
 	unsigned long long value = 0;
-	for (size_t index = first; index < end && index < first + 9 && run->work.bytes[index] >= '0' && run->work.bytes[index] <= '9'; index++)
+	for (size_t index = first; index < end && index < first + 9 && fuzz_is_digit(run->work.bytes[index]); index++)
 		value = value * 10 + (run->work.bytes[index] - '0');
 	const size_t kind = fuzz_below(&run->random, 6);
-	value = kind == 0 ? value * 2 : kind == 1 ? value / 2 : kind < 4 ? value + 1 + fuzz_below(&run->random, 3) : value - (value > 0);
+	if (kind == 0)
+		value *= 2;
+	else if (kind == 1)
+		value /= 2;
+	else if (kind < 4)
+		value += 1 + fuzz_below(&run->random, 3);
+	else
+		value -= value > 0;
 	snprintf(text, sizeof text, "%llu", value);
 	fuzz_put_text(run, first, end, text);
 }
@@ -353,7 +369,9 @@ static int fuzz_replay(const struct fuzz *fuzz, void *context, char **paths)
 // Takes the options and loads the corpus.
 static void fuzz_prepare(struct fuzz_run *run, char **arguments)
 {
-	*run = (struct fuzz_run){.fuzz = run->fuzz, .context = run->context, .random = 1, .seconds = 20, .runs = UINT64_MAX};
+	run->random = 1;
+	run->seconds = 20;
+	run->runs = UINT64_MAX;
 	for (; *arguments != NULL && strncmp(*arguments, "--", 2) == 0 && arguments[1] != NULL; arguments += 2) {
 		if (strcmp(*arguments, "--seed") == 0)
 			run->random = strtoull(arguments[1], NULL, 10) * 0x9E3779B97F4A7C15u | 1;

@@ -1,5 +1,5 @@
-// Image files: whatever the bytes are, they are read as a second reader reads them or refused with an error; and what was read proves
-// exactly if a plainer machine says that it follows the plan.
+// Image files: whatever the bytes are, they are read as a second reader reads them or refused with an error; and what
+// was read proves exactly if a plainer machine says that it follows the plan.
 #include "naive.h"
 
 #include "image/codec.h"
@@ -15,7 +15,8 @@ static const char plan_text[] =
 	"  sync: { role: composite sync, active: low }\n"
 	"  long: { role: stretch, active: high, lead: 1 cell }\n"
 	"lines:\n"
-	"  a: { regions: [ { region: p, cells: 3, assert: [sync], stretch: 1 }, { region: q, cells: 9, hold: { lane: col } } ] }\n"
+	"  a: { regions: [ { region: p, cells: 3, assert: [sync], stretch: 1 },\n"
+	"                  { region: q, cells: 9, hold: { lane: col } } ] }\n"
 	"  b: { like: a, change: [ { region: q, cells: 10, hold: {} } ] }\n"
 	"frame: [ { repeat: 3, line: a }, { repeat: 1, line: b } ]\n"
 	"machine: { form: loop, state: 6 bits, fields: { lane: 3..0 } }\n"
@@ -24,8 +25,9 @@ static const char plan_text[] =
 	"           data: [next.0, next.1, next.2, next.3, sync, next.4, long, next.5] } ]\n";
 
 static const char *const words[] = {
-	"00000001FF", "020000040000FA", "020000040001F9", "020000021000EC", "020000021200EA", "0400000300003800C1", "04000005000000CD2A",
-	"0300300002337A1E", "02000004FFFFFC", "0000000000", "00FFFF0002", "FF", "ff", "00", "01", "02", "03", "04", "05", "06", NULL,
+	"00000001FF", "020000040000FA", "020000040001F9", "020000021000EC", "020000021200EA", "0400000300003800C1",
+	"04000005000000CD2A", "0300300002337A1E", "02000004FFFFFC", "0000000000", "00FFFF0002", "FF", "ff", "00",
+	"01", "02", "03", "04", "05", "06", NULL,
 };
 
 // What the second reader knows of a file.
@@ -46,7 +48,9 @@ static int digit_value(uint8_t character)
 
 static bool read_byte(struct reading *reading, unsigned offset, unsigned index, uint8_t byte)
 {
-	uint64_t address = reading->segmented ? reading->base + (offset + index) % 65536 : (reading->base + offset + index) % 4294967296;
+	uint64_t address = (reading->base + offset + index) % 4294967296;
+	if (reading->segmented)
+		address = reading->base + (offset + index) % 65536;
 	if (address >= reading->capacity || (reading->given[address] && reading->image[address] != byte))
 		return false;
 	reading->image[address] = byte;
@@ -208,7 +212,8 @@ static bool judge(void *context, const uint8_t *bytes, size_t length)
 	return good;
 }
 
-// Gives a record of whole bytes the length and checksum that it should have; now and then a checksum of which a bit is wrong.
+// Gives a record of whole bytes the length and checksum that it should have; now and then a checksum of which a bit
+// is wrong.
 static void repair_record(uint8_t *digits, size_t length)
 {
 	static const char hex[] = "0123456789ABCDEF";

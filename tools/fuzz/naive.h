@@ -1,5 +1,6 @@
-// The judge of the prover: a machine that goes state by state through wires and bytes, as plainly as it can be written, and the
-// musts that do not depend on the plan alone (closure, signals, power-up), checked in the same way. For small machines only.
+// The judge of the prover: a machine that goes state by state through wires and bytes, as plainly as it can be
+// written, and the musts that do not depend on the plan alone (closure, signals, power-up), checked in the same way.
+// For small machines only.
 #ifndef SCANLATCH_FUZZ_NAIVE_H
 #define SCANLATCH_FUZZ_NAIVE_H
 
@@ -56,11 +57,24 @@ static struct row naive_row(const struct naive *naive, uint32_t state)
 		const struct chip *chip = &naive->wiring.chips[index];
 		const uint8_t *bytes = naive->images->images[index].bytes;
 		const size_t address = naive_address(naive, chip, state);
-		const uint32_t word = chip->part->data_pins == 8 ? bytes[address] : bytes[2 * address] | (uint32_t)bytes[2 * address + 1] << 8;
+		const bool wide = chip->part->data_pins == 16;
+		const uint32_t word = wide ? bytes[2 * address] | (uint32_t)bytes[2 * address + 1] << 8 : bytes[address];
 		for (unsigned pin = 0; pin < chip->part->data_pins; pin++)
 			naive_read_pin(&chip->data[pin], word >> pin & 1, &row);
 	}
 	return row;
+}
+
+// What a data pin stores of a row.
+static inline bool naive_level(const struct data_wire *wire, const struct row *row)
+{
+	switch (wire->kind) {
+	case DATA_NEXT: return row->next >> wire->index & 1;
+	case DATA_CLEAR: return row->clear;
+	case DATA_SIGNAL: return row->levels >> wire->index & 1;
+	case DATA_OPEN: return true;
+	}
+	return true;
 }
 
 // Writes a row into the images, for the bank that the machine is set to.
@@ -71,9 +85,7 @@ static inline void naive_write_row(const struct naive *naive, uint32_t state, co
 		const unsigned width = chip->part->data_pins / 8;
 		uint8_t *bytes = naive->images->images[index].bytes + naive_address(naive, chip, state) * width;
 		for (unsigned pin = 0; pin < chip->part->data_pins; pin++) {
-			const struct data_wire *wire = &chip->data[pin];
-			const bool level = wire->kind == DATA_NEXT ? row->next >> wire->index & 1 :
-			                   wire->kind == DATA_SIGNAL ? row->levels >> wire->index & 1 : wire->kind == DATA_OPEN || row->clear;
+			const bool level = naive_level(&chip->data[pin], row);
 			bytes[pin / 8] = (uint8_t)((bytes[pin / 8] & ~(1u << pin % 8)) | (unsigned)level << pin % 8);
 		}
 	}
@@ -81,8 +93,8 @@ static inline void naive_write_row(const struct naive *naive, uint32_t state, co
 
 static uint32_t naive_settled(const struct naive *naive, uint32_t state)
 {
-	const bool falls = naive->wiring.advance == ADVANCE_COUNT && naive->wiring.clear == CLEAR_ASYNC && naive->rows[state].clear;
-	return falls ? 0 : state;
+	const bool may_fall = naive->wiring.advance == ADVANCE_COUNT && naive->wiring.clear == CLEAR_ASYNC;
+	return may_fall && naive->rows[state].clear ? 0 : state;
 }
 
 static uint32_t naive_next(const struct naive *naive, uint32_t state)
@@ -183,7 +195,8 @@ static enum naive_verdict naive_find(struct naive *naive)
 static uint32_t naive_power_up(const struct naive *naive)
 {
 	uint32_t longest = 0;
-	uint32_t *way = fuzz_need(malloc(naive->states * sizeof *way)), *trail = fuzz_need(malloc(naive->states * sizeof *trail));
+	uint32_t *way = fuzz_need(malloc(naive->states * sizeof *way));
+	uint32_t *trail = fuzz_need(malloc(naive->states * sizeof *trail));
 	memset(way, 0xFF, naive->states * sizeof *way);
 	for (uint32_t cell = 0; cell < naive->timeline->cell_count; cell++)
 		way[naive->lap[cell]] = 0;
@@ -219,7 +232,8 @@ static enum naive_verdict naive_bank(struct naive *naive)
 static enum naive_verdict naive_judge(const scanlatch_images *images, uint32_t *longest)
 {
 	const struct timeline *timeline = images->plan->timeline;
-	struct naive naive = {.images = images, .plan = timeline->plan, .timeline = timeline, .wiring = wiring_of(timeline->plan)};
+	struct naive naive = {.images = images, .plan = timeline->plan, .timeline = timeline};
+	naive.wiring = wiring_of(timeline->plan);
 	if (naive.wiring.state_bits > NAIVE_STATE_BITS || naive.wiring.bank_bits > 2)
 		return NAIVE_TOO_LARGE;
 	struct arena *arena = fuzz_need(arena_create());

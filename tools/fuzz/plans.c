@@ -1,5 +1,6 @@
-// Plans: whatever the text is, it is read into a plan or refused with an error; a plan is made into images or refused with an error; images
-// that were made prove; and images that were spoilt prove exactly if a plainer machine says that they still follow the plan.
+// Plans: whatever the text is, it is read into a plan or refused with an error; a plan is made into images or refused
+// with an error; images that were made prove; and images that were spoilt prove exactly if a plainer machine says
+// that they still follow the plan.
 #include "naive.h"
 
 #define SPOILT 10u // sets of images for each plan
@@ -7,13 +8,15 @@
 #define PROVED_STATE_BITS 20u
 
 static const char *const words[] = {
-	"scanlatch", "name", "note", "clock", "master", "accuracy", "dot", "cell", "stretch", "subcarrier", "phase", "every", "line", "lines",
-	"frame", "frames", "free", "signals", "role", "active", "lead", "from", "field", "codes", "auto", "data", "high", "low", "plain",
-	"blanking", "cells", "regions", "region", "time", "fill", "true", "false", "assert", "hold", "like", "change", "repeat", "machine", "form",
-	"loop", "state", "bits", "fields", "start", "outputs", "registered", "direct", "advance", "table", "count", "clear", "sync", "async", "chips",
-	"part", "speed", "label", "address", "next", "bank", "parts", "access", "timing", "share", "margin", "latch", "delay", "setup", "sweep",
-	"within", "Hz", "MHz", "us", "ns", "ticks", "dots", "ppm", "28C16", "28C64", "28C256", "27C1024", "27C080", "XROM", "col", "row",
-	"0x10", "standard", "grade", "kind", "stage", "step", NULL,
+	"scanlatch", "name", "note", "clock", "master", "accuracy", "dot", "cell", "stretch", "subcarrier", "phase",
+	"every", "line", "lines", "frame", "frames", "free", "signals", "role", "active", "lead", "from", "field",
+	"codes", "auto", "data", "high", "low", "plain", "blanking", "cells", "regions", "region", "time", "fill",
+	"true", "false", "assert", "hold", "like", "change", "repeat", "machine", "form", "loop", "state", "bits",
+	"fields", "start", "outputs", "registered", "direct", "advance", "table", "count", "clear", "sync", "async",
+	"chips", "part", "speed", "label", "address", "next", "bank", "parts", "access", "timing", "share", "margin",
+	"latch", "delay", "setup", "sweep", "within", "Hz", "MHz", "us", "ns", "ticks", "dots", "ppm", "28C16",
+	"28C64", "28C256", "27C1024", "27C080", "XROM", "col", "row", "0x10", "standard", "grade", "kind", "stage",
+	"step", NULL,
 };
 
 static void require_text(char *text)
@@ -43,12 +46,14 @@ static enum verdict verdict_of(const scanlatch_proofs *proofs, enum proof_kind k
 	return proofs->proofs->proof[kind].verdict;
 }
 
-// Proves images, and requires that the report can be written and that a plainer machine agrees. True if closure, signals and power-up pass.
+// Proves images, and requires that the report can be written and that a plainer machine agrees. True if closure,
+// signals and power-up pass.
 static bool prove(const scanlatch_images *images)
 {
 	uint32_t longest = 0;
 	scanlatch_proofs *proofs = fuzz_need(scanlatch_prove(images));
-	const bool passed = verdict_of(proofs, PROOF_CLOSURE) == VERDICT_PASS && verdict_of(proofs, PROOF_SIGNALS) == VERDICT_PASS &&
+	const bool passed = verdict_of(proofs, PROOF_CLOSURE) == VERDICT_PASS &&
+	                    verdict_of(proofs, PROOF_SIGNALS) == VERDICT_PASS &&
 	                    verdict_of(proofs, PROOF_POWER_UP) == VERDICT_PASS;
 	FUZZ_REQUIRE(passed || scanlatch_proofs_failed(proofs, false));
 	require_text(scanlatch_proofs_text(proofs, false));
@@ -68,9 +73,11 @@ static scanlatch_images *read_back(const scanlatch_images *made, scanlatch_messa
 	for (size_t index = 0; index < scanlatch_plan_chips(made->plan); index++) {
 		const char *label = scanlatch_plan_chip_label(made->plan, index);
 		const struct image *image = &made->images[index];
+		const unsigned record = index % 4 == 1 ? 16 : 32;
 		size_t length = image->length;
-		char *hex = index % 2 == 1 ? fuzz_need(scanlatch_images_hex(made, index, index % 4 == 1 ? 16 : 32, &length)) : NULL;
-		FUZZ_REQUIRE(scanlatch_images_read(read, label, "image", hex != NULL ? (void *)hex : (void *)image->bytes, length, messages));
+		char *hex = index % 2 == 1 ? fuzz_need(scanlatch_images_hex(made, index, record, &length)) : NULL;
+		const void *file = hex != NULL ? (const void *)hex : image->bytes;
+		FUZZ_REQUIRE(scanlatch_images_read(read, label, "image", file, length, messages));
 		FUZZ_REQUIRE(memcmp(read->images[index].bytes, image->bytes, image->length) == 0);
 		scanlatch_free(hex);
 	}
@@ -115,7 +122,8 @@ static void divert(const struct naive *naive, uint64_t *random)
 // Two states change places everywhere: the same machine, but for what is seen of the state.
 static void swap_states(const struct naive *naive, const struct table *table, uint64_t *random)
 {
-	const uint32_t one = table->state_of_cell[fuzz_below(random, table->period)], other = (uint32_t)fuzz_below(random, naive->states);
+	const uint32_t one = table->state_of_cell[fuzz_below(random, table->period)];
+	const uint32_t other = (uint32_t)fuzz_below(random, naive->states);
 	const struct row row_of_one = naive_row(naive, one), row_of_other = naive_row(naive, other);
 	naive_write_row(naive, one, &row_of_other);
 	naive_write_row(naive, other, &row_of_one);
@@ -155,8 +163,9 @@ static void judge_images(const scanlatch_images *made, uint64_t random, bool col
 	if (timeline->cell_count > PROVED_CELLS || timeline->plan->machine.state_bits > PROVED_STATE_BITS)
 		return;
 	scanlatch_proofs *proofs = fuzz_need(scanlatch_prove(made));
+	const bool sweep_kept = verdict_of(proofs, PROOF_SWEEP) != VERDICT_FAIL;
 	FUZZ_REQUIRE((verdict_of(proofs, PROOF_COLOUR) != VERDICT_FAIL) == colour_kept);
-	FUZZ_REQUIRE(scanlatch_proofs_failed(proofs, false) == (!colour_kept || verdict_of(proofs, PROOF_SWEEP) == VERDICT_FAIL));
+	FUZZ_REQUIRE(scanlatch_proofs_failed(proofs, false) == !(colour_kept && sweep_kept));
 	require_json(scanlatch_manifest(proofs, SCANLATCH_FILE_BIN | SCANLATCH_FILE_HEX));
 	scanlatch_proofs_destroy(proofs);
 	require_text(scanlatch_images_listing(made));
