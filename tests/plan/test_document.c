@@ -357,7 +357,8 @@ static void reports_each_of_many_duplicates(void **state)
 	for (size_t index = 0; index < 20000; index++)
 		text_put(&text, "same: x\n");
 	struct parsed *const parsed = parse_bytes(text.bytes, text.length);
-	assert_int_equal(diagnostics_count(parsed->diagnostics), 19999);
+	assert_int_equal(diagnostics_error_count(parsed->diagnostics), 19999);
+	assert_int_equal(diagnostics_rule(parsed->diagnostics, 999), RULE_YAML_DUPLICATE_KEY);
 	assert_null(parsed->root);
 	parsed_release(parsed);
 	text_release(&text);
