@@ -72,7 +72,7 @@ struct colour_result {
 
 struct power_up_result {
 	uint64_t states;           // examined, over all banks
-	uint32_t frame_states;
+	uint32_t frame_states;     // in one bank
 	uint32_t longest_cells;    // the longest way to a state of the frame
 	struct fraction longest_lines; // cells / mean cells of a line
 	uint32_t longest_state;

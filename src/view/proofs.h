@@ -40,7 +40,7 @@ void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind k
 //   "colour":   { "uniform": all lines have the same number of cycles, fractions cycles_per_line (of the first line) and
 //                 cycles_per_frame, "repeats_lines", "repeats_frames" (fractions and repeats left out if they do not fit 64
 //                 bits), "asked": "free", "every line", "every 2 frames", … }
-//   "power-up": { "states" (in all banks), "frame_states", "longest_cells", fraction longest_lines, "longest_state",
+//   "power-up": { "states" (in all banks), "frame_states" (in one), "longest_cells", fraction longest_lines, "longest_state",
 //                 "longest_bank", "lost_states", and if some are lost "second_loop": { "state", "cells" } }
 //   "upset":    { "upsets", "worst_cells", "worst": { PLACE, "bit" }, fraction mean_cells, "worst_slip_cells", fraction
 //                 worst_slip_lines, "worst_slip": { PLACE, "bit" }, fraction mean_slip_cells }
