@@ -5,6 +5,7 @@
 #   BUILD=FOLDER          build there, so that builds of different kinds stand side by side
 #   FOLDER=base           let `check` run only tests/base
 #   PREFIX, DESTDIR       where `install` puts things
+#   V=1                   show every command whole
 #   NO_INSTALL=1          never install packages; GET_PACKAGES=: leaves the question of packages to you
 
 ifneq ($(filter check-sanitize,$(MAKECMDGOALS)),)
@@ -29,7 +30,11 @@ WARNINGS = -Wall -Wextra -Wpedantic -Wconversion -Wshadow -Wstrict-prototypes -W
 	-Wcast-qual -Wwrite-strings -Wundef -Wvla $(if $(filter 1,$(WERROR)),-Werror)
 FLAGS = -std=c11 -D_POSIX_C_SOURCE=200809L $(WARNINGS) -Isrc -Iinclude -I$(BUILD)/generated \
 	$(PACKAGE_FLAGS) $(CPPFLAGS) $(CFLAGS) $(SANITIZE)
-LIBRARIES = $(PACKAGE_LIBRARIES) -lz
+LIBRARIES = $(PACKAGE_LIBRARIES) -lz -pthread
+
+# Commands are shown as a word and a file; whole with V=1.
+QUIET = $(if $(filter 1,$(V)),,@)
+say = $(if $(QUIET),@echo '  $(1)  $(2)')
 
 PROGRAM = $(BUILD)/scanlatch
 LIBRARY = $(BUILD)/libscanlatch.a
@@ -68,31 +73,36 @@ help:
 	@echo 'make fuzz            feed the program random plans and images for a while'
 	@echo 'make install         install under PREFIX ($(PREFIX)); DESTDIR is honoured'
 	@echo 'make clean           remove $(BUILD)'
-	@echo 'Variables: CC CFLAGS LDFLAGS WERROR=1 BUILD=FOLDER FOLDER=base PREFIX DESTDIR NO_INSTALL=1'
+	@echo 'Variables: V=1 CC CFLAGS LDFLAGS WERROR=1 BUILD=FOLDER FOLDER=base PREFIX DESTDIR NO_INSTALL=1'
 
 packages:
 	@$(GET_PACKAGES) $(PACKAGE_SETS)
 
 $(PROGRAM): $(PROGRAM_OBJECTS) $(LIBRARY)
-	$(CC) $(FLAGS) $(LDFLAGS) -o $@ $(PROGRAM_OBJECTS) $(LIBRARY) $(LIBRARIES)
+	$(call say,LINK,$@)
+	$(QUIET)$(CC) $(FLAGS) $(LDFLAGS) -o $@ $(PROGRAM_OBJECTS) $(LIBRARY) $(LIBRARIES)
 
 # From scratch, so that no member outlives its source.
 $(LIBRARY): $(LIBRARY_OBJECTS) $(BUILD)/members
-	rm -f $@
-	$(AR) rcs $@ $(LIBRARY_OBJECTS)
+	$(call say,AR  ,$@)
+	$(QUIET)rm -f $@
+	$(QUIET)$(AR) rcs $@ $(LIBRARY_OBJECTS)
 
 $(BUILD)/obj/%.o: src/%.c $(BUILD)/flags | $(PACKAGES)
 	@mkdir -p $(@D)
-	$(CC) $(FLAGS) -MMD -MP -c -o $@ $<
+	$(call say,CC  ,$<)
+	$(QUIET)$(CC) $(FLAGS) -MMD -MP -c -o $@ $<
 
 $(BUILD)/obj/generated/%.o: $(BUILD)/generated/%.c $(BUILD)/flags | $(PACKAGES)
 	@mkdir -p $(@D)
-	$(CC) $(FLAGS) -MMD -MP -c -o $@ $<
+	$(call say,CC  ,$<)
+	$(QUIET)$(CC) $(FLAGS) -MMD -MP -c -o $@ $<
 
 # Each catalogue as an array of its bytes, a NUL after them, and its length without the NUL.
 $(CATALOGUE_DATA): $(CATALOGUES)
 	@mkdir -p $(@D)
-	{ echo '#include "catalogue/data.h"'; \
+	$(call say,DATA,$@)
+	$(QUIET){ echo '#include "catalogue/data.h"'; \
 	for file in $(CATALOGUES); do \
 		name=$$(basename "$$file" .yaml | tr - _); \
 		echo "const unsigned char catalogue_$$name[] = {"; \
@@ -106,7 +116,8 @@ $(TEST_PROGRAMS): $(BUILD)/tests/%: tests/%.c
 $(BENCH_PROGRAMS) $(FUZZ_PROGRAMS): $(BUILD)/%: tools/%.c
 $(CLIENTS): $(LIBRARY) $(BUILD)/flags | $(PACKAGES)
 	@mkdir -p $(@D)
-	$(CC) $(FLAGS) -MMD -MP -MF $@.d $(LDFLAGS) -o $@ $(firstword $(filter tests/%.c tools/%.c,$^)) $(LIBRARY) $(CLIENT_LIBRARIES) $(LIBRARIES)
+	$(call say,CC  ,$@)
+	$(QUIET)$(CC) $(FLAGS) -MMD -MP -MF $@.d $(LDFLAGS) -o $@ $(firstword $(filter tests/%.c tools/%.c,$^)) $(LIBRARY) $(CLIENT_LIBRARIES) $(LIBRARIES)
 
 # What was compiled last time, so that other flags or a vanished source lead to a new build.
 $(BUILD)/flags: export STAMP = $(CC) $(FLAGS)
@@ -129,13 +140,16 @@ fuzz: $(PROGRAM) $(FUZZ_PROGRAMS) | $(PACKAGES)
 
 install: $(PROGRAM) $(LIBRARY) $(BUILD)/scanlatch.pc
 	install -d '$(INSTALLED)/bin' '$(INSTALLED)/lib/pkgconfig' '$(INSTALLED)/include/scanlatch' \
-		'$(INSTALLED)/share/man/man1' '$(INSTALLED)/share/bash-completion/completions'
+		'$(INSTALLED)/share/man/man1' '$(INSTALLED)/share/bash-completion/completions' \
+		'$(INSTALLED)/share/doc/scanlatch/plans'
 	install -m 755 $(PROGRAM) '$(INSTALLED)/bin/scanlatch'
 	install -m 644 $(LIBRARY) '$(INSTALLED)/lib/libscanlatch.a'
 	install -m 644 $(BUILD)/scanlatch.pc '$(INSTALLED)/lib/pkgconfig/scanlatch.pc'
 	install -m 644 include/scanlatch/scanlatch.h '$(INSTALLED)/include/scanlatch/scanlatch.h'
 	install -m 644 src/command/scanlatch.1 '$(INSTALLED)/share/man/man1/scanlatch.1'
 	install -m 644 src/command/scanlatch.bash-completion '$(INSTALLED)/share/bash-completion/completions/scanlatch'
+	install -m 644 README.md LICENSE '$(INSTALLED)/share/doc/scanlatch'
+	install -m 644 plans/README.md plans/*.yaml '$(INSTALLED)/share/doc/scanlatch/plans'
 
 # The library is static, so that whoever links it links what it uses.
 $(BUILD)/scanlatch.pc: include/scanlatch/scanlatch.h FORCE

@@ -114,8 +114,13 @@ void scanlatch_proofs_destroy(scanlatch_proofs *proofs);
 /* True if a must failed or, with strict, anything that is advice. Cannot fail. */
 bool scanlatch_proofs_failed(const scanlatch_proofs *proofs, bool strict);
 
+/* The names of the advice that fails, separated by ", "; "" if there is none. NULL when memory is out. */
+char *scanlatch_proofs_missed(const scanlatch_proofs *proofs);
+
 /* The report, a line for each proof. NULL when memory is out. */
 char *scanlatch_proofs_text(const scanlatch_proofs *proofs, bool colour);
+/* { "name": of the plan, "failed": true if a must failed, "missed": [names of advice that fails], "proofs": { … } }, the last as
+ * src/view/proofs.h says. NULL when memory is out. */
 char *scanlatch_proofs_json(const scanlatch_proofs *proofs);
 
 /* The manifest of a build, as a JSON document. Which files were written for each chip: bit 0 .bin, bit 1 .hex. NULL when memory is out. */

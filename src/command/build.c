@@ -14,7 +14,8 @@ static const char help[] =
 	"\n"
 	"Lays out each plan, chooses states, fills the tables and proves the images as they will be on disk.\n"
 	"Then writes NAME.LABEL.bin and NAME.LABEL.hex for each chip and NAME.manifest.json into DIR, which is\n"
-	"made if it is not there. If a must fails, nothing is written. PLAN may be - for standard input.\n"
+	"made if it is not there. If a must fails, or a plan is bad, nothing is written for any of them.\n"
+	"PLAN may be - for standard input.\n"
 	"\n"
 	"Options:\n"
 	"  -o, --output DIR   where the images go\n"
@@ -189,16 +190,26 @@ static bool any_failed(const struct build *build)
 	return false;
 }
 
-static int write_files(const struct build *build)
+static void report_write_failure(const struct write_failure *failure)
 {
-	struct write_failure failure;
-	if (file_write_all(build->arena, build->options->directory, build->files, build->file_count, &failure))
-		return EXIT_GOOD;
 	// Renames come last: when one fails, those before it have been done.
-	const bool begun = strcmp(failure.step, "rename") == 0;
-	fprintf(stderr, "scanlatch: cannot %s %s: %s; %s\n", failure.step, failure.path, strerror(failure.error),
+	const bool begun = strcmp(failure->step, "rename") == 0;
+	fflush(stdout);
+	fprintf(stderr, "scanlatch: cannot %s %s: %s; %s\n", failure->step, failure->path, strerror(failure->error),
 	        begun ? "files before it may be new already" : "nothing was written");
-	return EXIT_SYSTEM;
+}
+
+// What the files came to, last, so that it is what a reader sees first.
+static void print_outcome(const struct job *job, bool written)
+{
+	const char *name = scanlatch_plan_name(job->plan);
+	char *advice = scanlatch_proofs_missed(job->proofs);
+	if (job->failed)
+		printf("%s: %s\n", name, written ? "written though a proof failed, as asked by --unproven"
+		                                : "a proof failed: nothing was written (--unproven writes all the same)");
+	else if (written && advice != NULL && advice[0] != '\0')
+		printf("%s: written; advice missed: %s\n", name, advice);
+	scanlatch_free(advice);
 }
 
 static void print_text(const struct build *build, bool written)
@@ -210,12 +221,10 @@ static void print_text(const struct build *build, bool written)
 		for (size_t file = job->first_file; written && file < job->first_file + job->file_count; file++)
 			printf("%-5s %s/%s (%zu bytes)\n", build->files[file].kept ? "kept" : "wrote", build->options->directory,
 			       build->files[file].name, build->files[file].length);
-		if (job->failed)
-			printf("%s\n", written ? "written though a proof failed, as asked by --unproven"
-			                       : "a proof failed: nothing was written (--unproven writes all the same)");
+		print_outcome(job, written);
 	}
 	if (!written && build->job_count > 1)
-		puts("nothing was written");
+		puts("\nnothing was written for any of the plans");
 }
 
 static json_t *job_json(const struct build *build, const struct job *job, bool written)
@@ -225,7 +234,8 @@ static json_t *job_json(const struct build *build, const struct job *job, bool w
 		json_array_append_new(files, json_pack("{s:s, s:I, s:b}", "name", build->files[file].name, "bytes",
 		                                       (json_int_t)build->files[file].length, "kept", (int)build->files[file].kept));
 	char *manifest = scanlatch_manifest(job->proofs, build->options->files);
-	json_t *document = json_pack("{s:s, s:b, s:o, s:o}", "name", scanlatch_plan_name(job->plan), "written", (int)written, "files", files,
+	json_t *document = json_pack("{s:s, s:b, s:b, s:o, s:o}", "name", scanlatch_plan_name(job->plan), "failed", (int)job->failed,
+	                             "written", (int)written, "files", files,
 	                             "manifest", manifest != NULL ? json_loads(manifest, 0, NULL) : NULL);
 	scanlatch_free(manifest);
 	return document;
@@ -247,15 +257,18 @@ static int print_json(const struct build *build, bool written)
 // Everything is made and proved: writes what may be written, and reports.
 static int finish(const struct build *build)
 {
-	const bool failed = any_failed(build);
-	const bool write = !failed || build->options->unproven;
-	const int written = write ? write_files(build) : EXIT_GOOD;
-	int printed = EXIT_GOOD;
+	const bool failed = any_failed(build), write = !failed || build->options->unproven;
+	struct write_failure failure;
+	const bool refused = write && !file_write_all(build->arena, build->options->directory, build->files, build->file_count, &failure);
+	int code = failed ? EXIT_FOUND : EXIT_GOOD;
 	if (build->options->common.json)
-		printed = print_json(build, write && written == EXIT_GOOD);
+		code = worse(code, print_json(build, write && !refused));
 	else
-		print_text(build, write && written == EXIT_GOOD);
-	return worse(worse(written, printed), failed ? EXIT_FOUND : EXIT_GOOD);
+		print_text(build, write && !refused);
+	if (!refused)
+		return code;
+	report_write_failure(&failure);
+	return EXIT_SYSTEM;
 }
 
 static int build_plans(const struct build_options *options, char **paths, size_t count)
@@ -272,6 +285,8 @@ static int build_plans(const struct build_options *options, char **paths, size_t
 		code = worse(code, run_job(&build, &build.jobs[index], paths[index]));
 	if (code == EXIT_GOOD)
 		code = names_differ(&build) ? finish(&build) : EXIT_BAD;
+	else if (count > 1)
+		fputs("scanlatch: nothing was written, since not all plans could be built\n", stderr);
 	for (size_t index = 0; index < build.file_count; index++)
 		scanlatch_free(build.owned[index]);
 	for (size_t index = 0; build.jobs != NULL && index < count; index++) {

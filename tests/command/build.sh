@@ -97,13 +97,20 @@ holds 'same images from a file of another name' cmp first/tide-board-60.rom0.bin
 # Proofs that fail.
 build 1 out-of-step.yaml -o failed
 holds 'a must failed: nothing written' test ! -e failed
-same 'a must failed: says so' 'a proof failed: nothing was written (--unproven writes all the same)' \
+same 'a must failed: says so' 'out-of-step: a proof failed: nothing was written (--unproven writes all the same)' \
 	"$(tail -n 1 stdout)"
 build 1 out-of-step.yaml -o failed --unproven
 listed failed out-of-step.rom0.{bin,hex} out-of-step.manifest.json
-same '--unproven: says so' 'written though a proof failed, as asked by --unproven' "$(tail -n 1 stdout)"
+same '--unproven: says so' 'out-of-step: written though a proof failed, as asked by --unproven' "$(tail -n 1 stdout)"
 same '--unproven: the manifest says so too' fail \
 	"$(python3 -c 'import json; print(json.load(open("failed/out-of-step.manifest.json"))["proofs"]["colour"]["verdict"])')"
+"$SCANLATCH" build rounding.yaml no-such.yaml -o together >stdout 2>stderr
+same 'one plan of two is bad: status' 3 $?
+same 'one plan of two is bad: nothing written' 'scanlatch: nothing was written, since not all plans could be built' \
+	"$(tail -n 1 stderr)"
+holds 'one plan of two is bad: no folder' test ! -e together
+"$SCANLATCH" build rounding.yaml -o /dev/null/nowhere >both-streams 2>&1
+same 'a refusal stands last' 'scanlatch: cannot make directory /dev/null' "$(tail -n 1 both-streams | cut -c 1-42)"
 build 1 rounding.yaml out-of-step.yaml -o together
 holds 'one plan of two failed: nothing written' test ! -e together
 for plan in speed-notice flicker; do

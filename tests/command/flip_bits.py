@@ -49,7 +49,7 @@ def run(*arguments):
 
 def counterexamples(output):
     """Places (chip, address) that the failed proofs show; (None, None) for one that shows none."""
-    failed_proofs = [proof for proof in json.loads(output).values() if proof['verdict'] == 'fail']
+    failed_proofs = [proof for proof in json.loads(output)['proofs'].values() if proof['verdict'] == 'fail']
     examples = [proof.get('counterexample', {}) for proof in failed_proofs]
     return [(example.get('chip'), example.get('address')) for example in examples]
 

@@ -70,7 +70,7 @@ def judge(plan, folder, proofs):
     same('rate', fractions.Fraction(frame['rate']['fraction']), hertz / int(frame['ticks']))
     check(abs(frame['rate']['decimal'] - float(hertz / int(frame['ticks']))) < 1e-6, 'decimal rate', frame['rate'])
     if proofs:
-        same('proofs', manifest['proofs'], json.loads(read(proofs)))
+        same('proofs', manifest['proofs'], json.loads(read(proofs))['proofs'])
 
 
 judge(sys.argv[1], sys.argv[2], sys.argv[3] if len(sys.argv) > 3 else None)

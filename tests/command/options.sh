@@ -191,6 +191,16 @@ json 'build --json of two' 0 build --json good.yaml slow.yaml -o out
 json 'build --json, nothing written' 1 build --json out-of-step.yaml -o nowhere
 holds 'build --json, nothing written: no folder' test ! -e nowhere
 json 'prove --json' 0 prove --json good.yaml out
+same 'prove --json: which plan, and how it went' 'own-part False [] 8' \
+	"$(python3 -c 'import json
+report = json.load(open("stdout"))
+print(report["name"], report["failed"], report["missed"], len(report["proofs"]))')"
+json 'build --json of missed advice' 0 build --json slow.yaml -o slow
+same 'build --json: not failed, written' 'False True' \
+	"$(python3 -c 'import json; report = json.load(open("stdout")); print(report["failed"], report["written"])')"
+json 'prove --json of missed advice' 0 prove --json slow.yaml slow
+same 'prove --json: what is missed' "False ['speed']" \
+	"$(python3 -c 'import json; report = json.load(open("stdout")); print(report["failed"], report["missed"])')"
 json 'list --json' 0 list --json parts
 same 'list --json: a part' '17' \
 	"$(python3 -c 'import json

@@ -137,7 +137,7 @@ same 'a wrong level: where, and which byte' \
       row of state 0x1, which sets load: byte 0xEE at address 0x1 of chip rom0' "$(grep -A 3 'FAIL  signals' stdout)"
 same 'a wrong level in JSON' '1 rom0 1 238' "$("$SCANLATCH" prove lead.yaml --json rom0=level.bin | python3 -c '
 import json, sys
-place = json.load(sys.stdin)["signals"]["counterexample"]
+place = json.load(sys.stdin)["proofs"]["signals"]["counterexample"]
 print(place["state"], place["chip"], place["address"], place["byte"])')"
 # A wrong next state: row 2 leads to 2 instead of 3.
 printf '\xed\xe6\xf6\xe0' >next.bin

@@ -15,7 +15,7 @@ for name in apt-get sudo; do
 done
 
 build() {
-	PATH=$folder/bin:$PATH make -j2 BUILD="$folder/build" CFLAGS=-O0 "$@" >"$folder/log" 2>&1 || {
+	PATH=$folder/bin:$PATH make -j2 V=1 BUILD="$folder/build" CFLAGS=-O0 "$@" >"$folder/log" 2>&1 || {
 		cat "$folder/log"
 		return 1
 	}
@@ -35,7 +35,8 @@ same 'what is installed' "./opt/bench/bin/scanlatch
 ./opt/bench/lib/libscanlatch.a
 ./opt/bench/lib/pkgconfig/scanlatch.pc
 ./opt/bench/share/bash-completion/completions/scanlatch
-./opt/bench/share/man/man1/scanlatch.1" "$(cd "$folder/root" && find . -type f | sort)"
+$(for file in LICENSE README.md plans/README.md plans/*.yaml; do echo "./opt/bench/share/doc/scanlatch/$file"; done)
+./opt/bench/share/man/man1/scanlatch.1" "$(cd "$folder/root" && find . -type f | LC_ALL=C sort)"
 
 holds 'the installed program runs' "$root/bin/scanlatch" --version
 same 'the installed completion loads' 'complete -F _scanlatch scanlatch' \
