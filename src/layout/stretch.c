@@ -2,6 +2,8 @@
 
 #include <inttypes.h>
 
+#include "base/text.h"
+
 // The line lengths that meet a phase of N lines are the multiples of this many ticks: N × length × (subcarrier / master) is whole.
 // 0 if the numbers do not fit.
 static int64_t closing_ticks(const struct clock *clock)
@@ -26,23 +28,65 @@ static const struct region *first_auto_region(const struct line_type *line)
 	return NULL;
 }
 
+// A ratio this near to a whole number was meant to be one: crystals are marked to 1 in 100,000 or finer.
+#define ROUNDED_ONE_IN 10000
+
+static bool is_rounded(struct fraction ratio, int64_t whole)
+{
+	struct fraction apart, limit;
+	if (whole < 1 || !fraction_subtract(ratio, fraction_whole(whole), &apart) || !fraction_make(whole, ROUNDED_ONE_IN, &limit))
+		return false;
+	if (apart.numerator < 0)
+		apart.numerator = -apart.numerator;
+	return fraction_compare(apart, limit) <= 0;
+}
+
+// For lines that are far too short to close: the frequencies themselves are what does not fit.
+static void hint_ratio(struct layout *layout, struct fraction ratio, int64_t closing)
+{
+	struct text decimal = {0};
+	const int64_t whole = fraction_nearest(ratio);
+	text_put_decimal(&decimal, ratio, 9);
+	if (is_rounded(ratio, whole)) {
+		diagnose_hint(layout->diagnostics,
+		              "the master clock is about %s times the subcarrier, not %" PRId64 " times; write subcarrier: master / %" PRId64,
+		              text_string(&decimal), whole, whole);
+		diagnose_hint(layout->diagnostics, "a frequency that was rounded can be given exactly, as a fraction such as 315/22 MHz");
+	} else {
+		diagnose_hint(layout->diagnostics,
+		              "the master clock is about %s times the subcarrier, so only multiples of %" PRId64
+		              " ticks would; let it be a small whole multiple, subcarrier: master / N",
+		              text_string(&decimal), closing);
+	}
+	text_release(&decimal);
+}
+
+// Says which line lengths would meet the phase, or why none of a usable length does.
+static void hint_lengths(struct layout *layout, const struct clock *clock, int64_t ticks, int64_t longest, int64_t closing)
+{
+	const int64_t below = ticks / closing * closing;
+	const int64_t above = below + closing;
+	struct fraction ratio;
+	if (closing > longest && fraction_divide(clock->master_hz, clock->subcarrier_hz, &ratio) && !fraction_is_whole(ratio))
+		hint_ratio(layout, ratio, closing);
+	else if (below > 0)
+		diagnose_hint(layout->diagnostics, "line lengths of %" PRId64 " or %" PRId64 " ticks would, as any multiple of %" PRId64 " does", below,
+		              above, closing);
+	else
+		diagnose_hint(layout->diagnostics, "a line length of %" PRId64 " ticks would, as any multiple of it does", above);
+}
+
 static bool report_unreachable(struct layout *layout, size_t type, const struct region *region, uint32_t available, int64_t closing)
 {
 	const struct laid_line *laid = &layout->types[type];
 	const struct clock *clock = &layout->plan->clock;
 	const int64_t longest = laid->ticks + available * clock->stretch_ticks;
-	const int64_t below = laid->ticks / closing * closing;
-	const int64_t above = below + closing;
 	diagnose(layout->diagnostics, RULE_PHASE_UNREACHABLE, region->stretch_place,
 	         "line type \"%s\" has %" PRId64 " ticks, and up to %" PRId64 " with %u cell%s stretched by %" PRId64
 	         ": none of these lengths meets the phase",
 	         layout->plan->lines[type].name, laid->ticks, longest, available, available == 1 ? "" : "s", clock->stretch_ticks);
 	diagnose_also(layout->diagnostics, clock->phase_place, "the phase that is asked");
-	if (below > 0)
-		diagnose_hint(layout->diagnostics, "line lengths of %" PRId64 " or %" PRId64 " ticks would, as any multiple of %" PRId64 " does", below,
-		              above, closing);
-	else
-		diagnose_hint(layout->diagnostics, "a line length of %" PRId64 " ticks would, as any multiple of it does", above);
+	hint_lengths(layout, clock, laid->ticks, longest, closing);
 	return false;
 }
 
