@@ -88,6 +88,14 @@ struct counterexample blame_pin(const struct trial *trial, uint32_t cell, size_t
 	return found;
 }
 
+void blame_other_proof(const struct trial *trial, enum proof_kind kind, struct counterexample *found)
+{
+	found->state = NO_STATE;
+	found->byte_known = false;
+	if (found->what != NULL)
+		found->what = arena_format(trial->proofs->arena, "%s; this may follow from the earlier fault under %s", found->what, proof_name(kind));
+}
+
 const char *next_bytes(const struct trial *trial, uint32_t state)
 {
 	struct text text = {0};

@@ -4,11 +4,11 @@
 #include "base/arena.h"
 #include "proof/jump.h"
 
-// `bytes`: the bytes that hold the next state, in words.
+// `bytes`: the bytes that hold the next state, in words: " (…)", or nothing.
 static const char *back_too_early(const struct trial *trial, const char *bytes)
 {
 	const struct lap *lap = &trial->lap;
-	return arena_format(trial->proofs->arena, "the next state is 0x%" PRIX32 " (%s), the frame's first: it came back after %"
+	return arena_format(trial->proofs->arena, "the next state is 0x%" PRIX32 "%s, the frame's first: it came back after %"
 	                    PRIu32 " cell%s, expected after %s%" PRIu32, lap->states[0], bytes, lap->return_cells,
 	                    lap->return_cells == 1 ? "" : "s",
 	                    trial->period < trial->timeline->cell_count ? "a multiple of " : "", trial->period);
@@ -17,7 +17,7 @@ static const char *back_too_early(const struct trial *trial, const char *bytes)
 static const char *back_elsewhere(const struct trial *trial, const char *bytes, uint32_t next, uint32_t used_at)
 {
 	const struct lap *lap = &trial->lap;
-	return arena_format(trial->proofs->arena, "the next state is 0x%" PRIX32 " (%s), which cell %" PRIu32
+	return arena_format(trial->proofs->arena, "the next state is 0x%" PRIX32 "%s, which cell %" PRIu32
 	                    " of the frame had already: expected a way back to the first state 0x%" PRIX32, next, bytes,
 	                    used_at, lap->states[0]);
 }
@@ -26,7 +26,7 @@ static const char *not_back(const struct trial *trial, const char *bytes)
 {
 	const struct lap *lap = &trial->lap;
 	return arena_format(trial->proofs->arena, "the next state after the frame's %" PRIu32 " cells is 0x%" PRIX32
-	                    " (%s), expected the first state 0x%" PRIX32, trial->timeline->cell_count, lap->state_after, bytes,
+	                    "%s, expected the first state 0x%" PRIX32, trial->timeline->cell_count, lap->state_after, bytes,
 	                    lap->states[0]);
 }
 
@@ -54,8 +54,16 @@ static bool find_repeat(const struct trial *trial, uint32_t *cell, uint32_t *use
 	return false;
 }
 
-// Why the states are no loop that fits the frame. The words are NULL when memory is out.
-static struct counterexample loop_fault(const struct trial *trial)
+// The bytes that hold the next state of a state, unless they are healthy. NULL when memory is out.
+static const char *bytes_to_blame(const struct trial *trial, uint32_t state, bool healthy)
+{
+	const char *bytes = healthy ? "" : next_bytes(trial, state);
+	return healthy || bytes == NULL ? bytes : arena_format(trial->proofs->arena, " (%s)", bytes);
+}
+
+// Why the states are no loop that fits the frame. The words are NULL when memory is out. A pin or held bit that is wrong before says that the
+// machine went astray earlier, unseen: then the row where it shows is as it should be.
+static struct counterexample loop_fault(const struct trial *trial, uint32_t wrong_before)
 {
 	const struct lap *lap = &trial->lap;
 	const uint32_t cells = trial->timeline->cell_count;
@@ -69,7 +77,7 @@ static struct counterexample loop_fault(const struct trial *trial)
 	if (lap->return_cells == 0 && !repeats)
 		wrong_bits = next ^ lap->states[0];
 	struct counterexample found = blame_next(trial, cell, wrong_bits);
-	const char *bytes = memory_out ? NULL : next_bytes(trial, found.state);
+	const char *bytes = memory_out ? NULL : bytes_to_blame(trial, found.state, wrong_before <= cell);
 	if (bytes == NULL)
 		return found;
 	found.what = lap->return_cells != 0 ? back_too_early(trial, bytes)
@@ -96,15 +104,13 @@ static uint32_t wrong_length_cell(const struct trial *trial, const struct frame_
 	return line->first_cell;
 }
 
+// Only a stretch signal makes lines longer or shorter.
 static struct counterexample line_fault(const struct trial *trial, uint32_t line_index)
 {
-	const struct plan *plan = trial->timeline->plan;
 	const struct frame_line *line = &trial->timeline->lines[line_index];
-	uint32_t cell = wrong_length_cell(trial, line);
-	int stretch = plan->role_signal[ROLE_STRETCH];
-	struct counterexample found = {.present = true, .bank = trial->bank, .signal = SIZE_MAX};
-	if (stretch >= 0)
-		found = blame_pin(trial, lap_stretch_cell(trial, cell), (size_t)stretch);
+	const uint32_t cell = wrong_length_cell(trial, line);
+	const int stretch = trial->timeline->plan->role_signal[ROLE_STRETCH];
+	struct counterexample found = blame_pin(trial, lap_stretch_cell(trial, cell), (size_t)stretch);
 	found.cell = cell;
 	found.what = arena_format(trial->proofs->arena, "the line takes %" PRId64 " ticks, expected %" PRId64
 	                          ": this cell takes %" PRId64, trial->lap.line_ticks[line_index],
@@ -123,6 +129,51 @@ static bool find_wrong_line(const struct trial *trial, uint32_t *wrong)
 	return false;
 }
 
+// A line of the wrong length, and the cell at whose pins that shows; UINT32_MAX if there is none. The latched pins of cell 0 come from where the
+// lap ended, and say nothing if it did not end well.
+struct line_fault {
+	struct counterexample found;
+	uint32_t shown_at;
+};
+
+static struct line_fault find_line_fault(const struct trial *trial)
+{
+	uint32_t line = 0;
+	struct line_fault fault = {.shown_at = UINT32_MAX};
+	if (!find_wrong_line(trial, &line))
+		return fault;
+	fault.found = line_fault(trial, line);
+	const uint32_t cell = lap_stretch_cell(trial, fault.found.cell);
+	if (cell >= first_judged_cell(trial))
+		fault.shown_at = cell;
+	return fault;
+}
+
+// The loop that does not fit, unless the wrong line shows first. What may follow from a pin or held bit that is wrong before is not blamed on a
+// byte, but a jump is certain.
+static bool loop_fails(struct trial *trial, const struct line_fault *line, uint32_t wrong_before)
+{
+	bool certain = false;
+	struct counterexample found = loop_fault(trial, wrong_before);
+	if (!find_jump(trial, &found, &certain))
+		return false;
+	trial->departed_cell = found.cell + 1;
+	const bool line_first = line->shown_at <= found.cell;
+	const uint32_t shown_at = line_first ? line->shown_at : trial->departed_cell;
+	if (line_first)
+		found = line->found;
+	if (wrong_before < shown_at && (line_first || !certain))
+		blame_other_proof(trial, PROOF_SIGNALS, &found);
+	return proof_fails(trial, PROOF_CLOSURE, found);
+}
+
+static bool line_fails(struct trial *trial, struct line_fault *line, uint32_t wrong_before)
+{
+	if (wrong_before < line->shown_at)
+		blame_other_proof(trial, PROOF_SIGNALS, &line->found);
+	return proof_fails(trial, PROOF_CLOSURE, line->found);
+}
+
 bool prove_closure(struct trial *trial)
 {
 	struct closure_result *result = &trial->proofs->closure;
@@ -131,17 +182,9 @@ bool prove_closure(struct trial *trial)
 		                                  .ticks = trial->lap.ticks, .period_cells = trial->lap.return_cells,
 		                                  .start_state = trial->lap.states[0]};
 	}
-	uint32_t line = 0;
-	bool wrong_line = find_wrong_line(trial, &line);
-	struct counterexample of_line = {.cell = UINT32_MAX}, of_loop = {.cell = UINT32_MAX};
-	if (wrong_line)
-		of_line = line_fault(trial, line);
+	struct line_fault line = find_line_fault(trial);
+	const uint32_t wrong_before = signals_first_cell(trial);
 	if (!trial->lap.closed)
-		of_loop = loop_fault(trial);
-	if (!wrong_line && trial->lap.closed)
-		return true;
-	struct counterexample found = of_line.cell < of_loop.cell ? of_line : of_loop;
-	if (!trial->lap.closed && !find_jump(trial, of_loop.cell, &found))
-		return false;
-	return proof_fails(trial, PROOF_CLOSURE, found);
+		return loop_fails(trial, &line, wrong_before);
+	return !line.found.present || line_fails(trial, &line, wrong_before);
 }

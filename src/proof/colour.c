@@ -146,7 +146,8 @@ static bool phase_fails(struct trial *trial, const struct phases *phases, uint32
 	else if (!multiply_checked(count, trial->lap.ticks, &ticks))
 		ticks = -1;
 	uint32_t cell = trial->timeline->lines[line].first_cell;
-	struct counterexample found = {.present = true, .bank = trial->bank, .cell = cell, .state = trial->lap.states[cell],
+	struct counterexample found = {.present = true, .bank = trial->bank, .cell = cell,
+	                               .state = trial->lap.states != NULL ? trial->lap.states[cell] : NO_STATE,
 	                               .signal = SIZE_MAX};
 	found.what = phase_words(phases, line, count, frames, ticks);
 	return proof_fails(trial, PROOF_COLOUR, found);

@@ -75,10 +75,24 @@ static void find_departure(const struct search *search, uint32_t *cell)
 	}
 }
 
-bool find_jump(const struct trial *trial, uint32_t loop_cell, struct counterexample *found)
+// Whether the frame closes once a state leads to another.
+static bool mends(const struct search *search, uint32_t state, uint32_t successor)
+{
+	const struct trial *trial = search->trial;
+	uint32_t at = trial->lap.states[0];
+	for (uint32_t cells = 1; cells <= trial->timeline->cell_count; cells++) {
+		at = at == state ? successor : search->next[at];
+		if (at == trial->lap.states[0])
+			return cells % trial->period == 0;
+	}
+	return false;
+}
+
+bool find_jump(const struct trial *trial, struct counterexample *found, bool *certain)
 {
 	const size_t states = (size_t)1 << trial->wiring.state_bits;
-	uint32_t orphan = 0, cell = loop_cell;
+	uint32_t orphan = 0, cell = found->cell;
+	*certain = false;
 	if (trial->wiring.advance != ADVANCE_TABLE)
 		return true;
 	uint32_t *next = arena_array(trial->arena, states, sizeof *next);
@@ -92,6 +106,8 @@ bool find_jump(const struct trial *trial, uint32_t loop_cell, struct counterexam
 		return true;
 	const struct search search = {trial, next, counts, first_wrong_pin(trial), count_leading_on(trial, next) + 1 >= trial->period};
 	find_departure(&search, &cell);
+	if (!mends(&search, trial->lap.states[cell], orphan))
+		return true;
 	const uint32_t after = next[trial->lap.states[cell]];
 	struct counterexample jump = blame_next(trial, cell, after ^ orphan);
 	jump.what = arena_format(trial->proofs->arena, "the next state is 0x%" PRIX32 ", expected 0x%" PRIX32
@@ -99,5 +115,6 @@ bool find_jump(const struct trial *trial, uint32_t loop_cell, struct counterexam
 	if (jump.what == NULL)
 		return false;
 	*found = jump;
+	*certain = true;
 	return true;
 }

@@ -1,4 +1,4 @@
-// Colour and speed of a plan that has no images yet: the lap is the timeline itself.
+// Colour and speed of a plan that has no images yet: the lap is the timeline itself, without states.
 #include "base/arena.h"
 #include "proof/trial.h"
 
@@ -16,9 +16,8 @@ static bool lap_of_plan(struct trial *trial)
 {
 	const struct timeline *timeline = trial->timeline;
 	struct lap *lap = &trial->lap;
-	lap->states = arena_array(trial->arena, timeline->cell_count, sizeof *lap->states);
 	lap->line_ticks = arena_array(trial->arena, timeline->line_count, sizeof *lap->line_ticks);
-	if (lap->states == NULL || lap->line_ticks == NULL)
+	if (lap->line_ticks == NULL)
 		return false;
 	for (uint32_t line = 0; line < timeline->line_count; line++)
 		lap->line_ticks[line] = timeline->types[timeline->lines[line].type].ticks;

@@ -29,6 +29,8 @@ const char *proof_name(enum proof_kind kind);
 // True for closure, signals, colour, power-up and sweep: if one fails, the images are wrong.
 bool proof_is_must(enum proof_kind kind);
 
+#define NO_STATE UINT32_MAX
+
 // Where an image byte is: for counterexamples.
 struct byte_place {
 	size_t chip;
@@ -42,7 +44,7 @@ struct counterexample {
 	bool present;
 	uint32_t bank;
 	uint32_t cell;         // index in the frame
-	uint32_t state;        // the state whose row was read when the fault came about
+	uint32_t state;        // the state whose row was read when the fault came about; NO_STATE if no row is at fault here
 	size_t signal;         // of a pin fault; SIZE_MAX if none
 	bool byte_known;
 	struct byte_place byte;

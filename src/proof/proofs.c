@@ -100,6 +100,7 @@ static bool prove_banks(struct trial *trial, bool has_start, uint32_t start_stat
 	bool proved = true;
 	for (trial->bank = 0; proved && trial->bank < trial->proofs->banks; trial->bank++) {
 		trial->lap = (struct lap){0};
+		trial->departed_cell = UINT32_MAX;
 		trial->ways = NULL;
 		trial->arena = arena_create();
 		proved = trial->arena != NULL && trial_prove(trial, has_start, start_state);

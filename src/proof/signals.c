@@ -31,11 +31,15 @@ static const char *pin_words(const struct trial *trial, uint32_t cell, size_t in
 	                    level_word(high), signal->auto_codes ? " elsewhere in the frame" : "");
 }
 
-// The first cell with a wrong pin; UINT32_MAX if there is none. The latched pins of cell 0 come from where the lap ended: if it did not end well
-// they are judged last, since what went wrong before says more.
+uint32_t first_judged_cell(const struct trial *trial)
+{
+	return trial->lap.closed || trial->wiring.outputs == OUTPUTS_DIRECT ? 0 : 1;
+}
+
+// The first cell with a wrong pin; UINT32_MAX if there is none.
 static uint32_t first_wrong_pin(const struct trial *trial)
 {
-	const uint32_t cells = trial->timeline->cell_count, first = trial->lap.closed ? 0 : 1;
+	const uint32_t cells = trial->timeline->cell_count, first = first_judged_cell(trial);
 	for (uint32_t index = 0; index < cells; index++) {
 		const uint32_t cell = (first + index) % cells;
 		if (trial->lap.pins[cell] != trial->expected[cell])
@@ -70,14 +74,12 @@ static const char *held_words(const struct trial *trial, uint32_t cell, uint32_t
 static uint32_t wrong_held_bits(const struct trial *trial, uint32_t cell)
 {
 	const struct timeline *timeline = trial->timeline;
-	return (trial->lap.states[cell] ^ timeline->hold_value[cell]) & timeline->hold_mask[cell];
+	return timeline->hold_mask == NULL ? 0 : (trial->lap.states[cell] ^ timeline->hold_value[cell]) & timeline->hold_mask[cell];
 }
 
 // The first cell with a wrong held bit; UINT32_MAX if there is none.
 static uint32_t first_wrong_held(const struct trial *trial)
 {
-	if (trial->timeline->hold_mask == NULL)
-		return UINT32_MAX;
 	for (uint32_t cell = 0; cell < trial->timeline->cell_count; cell++)
 		if (wrong_held_bits(trial, cell) != 0)
 			return cell;
@@ -101,15 +103,44 @@ static uint64_t held_cells(const struct timeline *timeline)
 	return count;
 }
 
+uint32_t signals_first_cell(const struct trial *trial)
+{
+	const uint32_t pin_cell = first_wrong_pin(trial), held_cell = first_wrong_held(trial);
+	const bool pin_is_last = pin_cell < first_judged_cell(trial);
+	return pin_is_last || held_cell < pin_cell ? held_cell : pin_cell;
+}
+
+// Whether a fault shows the states of a machine that went astray before, rather than a wrong byte. A latched pin of the first cell off the way is
+// stored in the row that leads there.
+static bool is_astray(const struct trial *trial, uint32_t cell, const struct counterexample *found)
+{
+	const bool row_of_cell = found->signal != SIZE_MAX && trial->lap.states[cell] == found->state && trial->wiring.outputs == OUTPUTS_DIRECT;
+	return cell > trial->departed_cell || (cell == trial->departed_cell && row_of_cell);
+}
+
+// The fault of the first cell that has one, or (with cell UINT32_MAX) of the latched pins of cell 0, which are judged last.
+static struct counterexample first_fault(const struct trial *trial, uint32_t cell)
+{
+	if (cell == UINT32_MAX) {
+		struct counterexample last = pin_fault(trial, 0);
+		blame_other_proof(trial, PROOF_CLOSURE, &last);
+		return last;
+	}
+	const bool pin = cell >= first_judged_cell(trial) && trial->lap.pins[cell] != trial->expected[cell];
+	struct counterexample found = pin ? pin_fault(trial, cell) : held_fault(trial, cell);
+	if (is_astray(trial, cell, &found))
+		blame_other_proof(trial, PROOF_CLOSURE, &found);
+	return found;
+}
+
 bool prove_signals(struct trial *trial)
 {
 	struct signals_result *result = &trial->proofs->signals;
 	const struct timeline *timeline = trial->timeline;
 	result->comparisons += (uint64_t)timeline->cell_count * timeline->plan->signal_count;
 	result->held_comparisons += held_cells(timeline);
-	uint32_t pin_cell = first_wrong_pin(trial), held_cell = first_wrong_held(trial);
-	if (pin_cell == UINT32_MAX && held_cell == UINT32_MAX)
+	const uint32_t cell = signals_first_cell(trial);
+	if (cell == UINT32_MAX && trial->lap.pins[0] == trial->expected[0])
 		return true;
-	return proof_fails(trial, PROOF_SIGNALS,
-	                   held_cell < pin_cell ? held_fault(trial, held_cell) : pin_fault(trial, pin_cell));
+	return proof_fails(trial, PROOF_SIGNALS, first_fault(trial, cell));
 }

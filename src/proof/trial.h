@@ -11,7 +11,7 @@ struct ways;
 
 // As many cells as the frame has, from the first cell on, as the machine takes them.
 struct lap {
-	uint32_t *states;         // [cell_count]
+	uint32_t *states;         // [cell_count]; NULL for a plan without images
 	uint64_t *pins;           // [cell_count]: bit s: signal s is asserted at its pin
 	uint32_t state_after;     // the state that follows the last cell
 	uint32_t return_cells;    // after so many cells the first state came back for the first time; 0: never in the lap
@@ -41,6 +41,7 @@ struct trial {
 	const struct machine *machine;
 	uint32_t bank;
 	struct lap lap;
+	uint32_t departed_cell;       // found by closure: the first cell that the states should not have come to; UINT32_MAX if there is none
 	struct ways *ways;            // found by power-up for upset; NULL if the lap is not closed
 	struct upset_sums upset_sums;
 };
@@ -78,6 +79,14 @@ void proof_not_judged(struct trial *trial, enum proof_kind kind, const char *rea
 // successor finds itself. They name the state whose row was read and the byte that stands there. Cannot fail.
 struct counterexample blame_pin(const struct trial *trial, uint32_t cell, size_t signal);
 struct counterexample blame_next(const struct trial *trial, uint32_t cell, uint32_t wrong_bits);
+// Turns a counterexample whose words are made into one that may only follow from an earlier fault that another proof shows: it names no row and no byte.
+// Its words are NULL when memory is out.
+void blame_other_proof(const struct trial *trial, enum proof_kind kind, struct counterexample *found);
+// From which cell on pins are judged, 0 or 1: the latched pins of cell 0 come from where the lap ended, so that they are judged last if it did not
+// end well. Cannot fail.
+uint32_t first_judged_cell(const struct trial *trial);
+// The first cell of the lap, from there on, at which a pin or a held bit is wrong; UINT32_MAX if there is none. Cannot fail.
+uint32_t signals_first_cell(const struct trial *trial);
 // The bytes of all chips that carry the next state (or clear) of a state, in words: "U7 0x01A3: 0x5B and U8 0x01A3: 0x00".
 // In the proofs' arena; NULL when memory is out.
 const char *next_bytes(const struct trial *trial, uint32_t state);

@@ -40,7 +40,8 @@ static json_t *counterexample_json(const struct proofs *proofs, enum proof_kind 
 		return object;
 	if (has_place(proofs, kind))
 		put_place(&object, proofs->timeline, found->cell);
-	json_put(&object, "state", count(found->state));
+	if (found->state != NO_STATE)
+		json_put(&object, "state", count(found->state));
 	if (found->signal != SIZE_MAX)
 		json_put(&object, "signal", json_string(plan->signals[found->signal].name));
 	if (found->byte_known)

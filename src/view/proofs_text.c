@@ -97,14 +97,14 @@ static void put_byte(struct report *report, const struct byte_place *byte)
 	text_printf(&report->words, " of chip %s", chip->label);
 }
 
-// Where the fault shows; if no byte is to blame, in which state.
+// Where the fault shows; if no byte is to blame, in which state, if one is known.
 static void detail_place(struct report *report, const struct counterexample *found)
 {
 	text_put(&report->words, "at ");
 	put_place(&report->words, report->proofs->timeline, found->cell);
 	text_printf(&report->words, "; cell %" PRIu32 " of the frame", found->cell);
 	put_bank(report, found->bank);
-	if (!found->byte_known) {
+	if (!found->byte_known && found->state != NO_STATE) {
 		text_put(&report->words, ", ");
 		put_state(report, found->state);
 	}

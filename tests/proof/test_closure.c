@@ -102,6 +102,74 @@ static void jump_ahead(void **test)
 	by_hand_destroy(hand);
 }
 
+// Row 1 has blank wrong, which shows in cell 2. Row 2 leads home, and so does row 3, so that nothing tells where the machine went astray: the pin
+// comes first, and closure blames no byte.
+static void wrong_pin_before(void **test)
+{
+	(void)test;
+	struct by_hand *hand = small_burned();
+	burn(hand, 1, 2, SMALL_BLANK);
+	burn(hand, 2, 0, small_pins[3]);
+	burn(hand, 3, 0, small_pins[4]);
+	struct proofs *proofs = prove(hand, 0);
+	const struct counterexample *found = failed(proofs);
+	assert_int_equal(found->cell, 2);
+	assert_false(found->byte_known);
+	assert_int_equal(found->state, NO_STATE);
+	assert_string_equal(found->what, "the next state is 0x0, the frame's first: it came back after 3 cells, expected after 5; this may "
+	                    "follow from the earlier fault under signals");
+	const struct counterexample *pin = &proofs->proof[PROOF_SIGNALS].counterexample;
+	assert_place(pin, 2, 1, 0, 1, 0xEA | 0x10);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
+// Cell 1 is held to 2, where the state is 1; the line grows only in cell 2, whose stretch pin row 1 sets.
+static void wrong_held_bits_before_a_long_line(void **test)
+{
+	(void)test;
+	struct by_hand *hand = by_hand_create(2);
+	uint64_t stretch = add_stretch(hand, 5);
+	size_t line = add_line(hand, "plain", 3, (uint64_t[]){0, 0, 0});
+	set_frame(hand, 1, &line);
+	set_hold(hand, 1, add_field(hand, "at", 1, 0), 2);
+	add_straight_chips(hand);
+	burn(hand, 0, 1, 0);
+	burn(hand, 1, 3, stretch);
+	burn(hand, 3, 0, 0);
+	struct proofs *proofs = prove(hand, 0);
+	const struct counterexample *found = failed(proofs);
+	assert_int_equal(found->cell, 2);
+	assert_false(found->byte_known);
+	assert_string_equal(found->what, "the line takes 35 ticks, expected 30: this cell takes 15; this may follow from the earlier fault "
+	                    "under signals");
+	// Row 0: next 1, stretch (active low) on D2 high, the rest erased.
+	assert_place(&proofs->proof[PROOF_SIGNALS].counterexample, 1, 0, 0, 0, 0xFD);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
+// Row 0 leads to 3: all that comes after shows the wrong states, and no wrong byte.
+static void signals_after_a_jump(void **test)
+{
+	(void)test;
+	struct by_hand *hand = small_burned();
+	burn(hand, 0, 3, small_pins[1]);
+	struct proofs *proofs = prove(hand, 0);
+	assert_place(failed(proofs), 0, 0, 0, 0, 0xFB);
+	const struct counterexample *pin = &proofs->proof[PROOF_SIGNALS].counterexample;
+	assert_int_equal(pin->cell, 2);
+	assert_false(pin->byte_known);
+	assert_string_equal(pin->what, "blank is high, expected low; this may follow from the earlier fault under closure");
+	// Row 2 has a wrong pin besides, so that two bytes are wrong. Mended, the jump still closes the frame.
+	proofs_destroy(proofs);
+	burn(hand, 2, 3, 0);
+	proofs = prove(hand, 0);
+	assert_place(failed(proofs), 0, 0, 0, 0, 0xFB);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
 // Row 3 leads to 2: cells 2 and 3 follow each other for ever.
 static void back_elsewhere(void **test)
 {
@@ -279,6 +347,9 @@ int main(void)
 		cmocka_unit_test(back_too_early_for_two_reasons),
 		cmocka_unit_test(jump_to_a_spare_state),
 		cmocka_unit_test(jump_ahead),
+		cmocka_unit_test(wrong_pin_before),
+		cmocka_unit_test(wrong_held_bits_before_a_long_line),
+		cmocka_unit_test(signals_after_a_jump),
 		cmocka_unit_test(back_elsewhere),
 		cmocka_unit_test(back_too_late),
 		cmocka_unit_test(blames_the_chip_of_the_wrong_bit),

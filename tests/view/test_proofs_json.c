@@ -111,6 +111,11 @@ static void a_fault_of_no_byte_and_no_pin_has_no_such_keys(void **state)
 		"'cycles_per_frame':'119079/2','cycles_per_frame_rounded':59539.5,'repeats_lines':4,'repeats_frames':2,"
 		"'asked':'every line','counterexample':{'what':'1 line takes 909/4 cycles','bank':3,'line':1,'line_type':'border',"
 		"'cell':0,'region':'front porch','frame_cell':101,'state':101}}");
+	harbour.proofs.proof[PROOF_COLOUR].counterexample.state = NO_STATE;
+	json_t *proofs = view_proofs_json(&harbour.proofs);
+	assert_non_null(json_object_get(json_object_get(json_object_get(proofs, "colour"), "counterexample"), "frame_cell"));
+	assert_null(json_object_get(json_object_get(json_object_get(proofs, "colour"), "counterexample"), "state"));
+	json_decref(proofs);
 }
 
 static void figures_that_do_not_fit_are_left_out(void **state)

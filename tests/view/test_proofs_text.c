@@ -219,6 +219,14 @@ static void a_phase_that_does_not_repeat_is_shown(void **state)
 		"      2 lines from line 1 on take 1818 ticks, which are 909/2 subcarrier cycles, expected a whole\n"
 		"        number\n"
 		"      at line 1 (border), cell 0 (front porch); cell 101 of the frame, state 0x0065\n");
+	// Before images are made there are no states.
+	harbour.proofs.proof[PROOF_COLOUR].counterexample.state = NO_STATE;
+	assert_proof(&harbour, PROOF_COLOUR,
+		"FAIL  colour    909/4 (227.25) cycles a line; the phase repeats every 4 lines and every 2 frames;\n"
+		"                asked: every 2 lines\n"
+		"      2 lines from line 1 on take 1818 ticks, which are 909/2 subcarrier cycles, expected a whole\n"
+		"        number\n"
+		"      at line 1 (border), cell 0 (front porch); cell 101 of the frame\n");
 }
 
 static void colour_names_what_is_asked(void **state)
