@@ -10,10 +10,11 @@ static bool fill_region(struct layout *layout, const struct line_type *line, str
 	const uint64_t stretch = stretch_signal >= 0 ? (uint64_t)1 << stretch_signal : 0;
 	const int64_t stretched = region->stretch == STRETCH_COUNT ? region->stretch_cells : 0;
 	if (stretched > place->cells) {
-		diagnose(layout->diagnostics, RULE_STRETCH_TOO_LONG, region->stretch_place,
-		         "region \"%s\" of line type \"%s\" is to have %lld cells stretched, but has %u", region->name, line->name,
-		         (long long)stretched, place->cells);
-		diagnose_also(layout->diagnostics, region->length_place, "its length is given here");
+		struct line_fault *fault =
+			line_faults_add(layout->faults, RULE_STRETCH_TOO_LONG, region->stretch_place, line,
+			                "region \"%s\" of line type \"%s\" is to have %lld cells stretched, but has %u",
+			                region->name, line->name, (long long)stretched, place->cells);
+		line_fault_also(layout->faults, fault, region->length_place, "its length is given here");
 		return false;
 	}
 	for (uint32_t cell = 0; cell < place->cells; cell++) {

@@ -6,31 +6,33 @@
 // Where in the frame a region's holds are being evaluated.
 struct held_region {
 	struct timeline *timeline;
-	struct diagnostics *diagnostics;
+	struct line_faults *faults;
 	const struct region *region;
 	const struct laid_region *laid;
 	const struct frame_line *line;
 	uint32_t line_number;
 };
 
-static const char *type_name(const struct held_region *held)
+static const struct line_type *type_of(const struct held_region *held)
 {
-	return held->timeline->plan->lines[held->line->type].name;
+	return &held->timeline->plan->lines[held->line->type];
 }
 
 static bool report_value(const struct held_region *held, const struct hold *hold, uint32_t col, enum expression_status status,
                          int64_t value)
 {
 	const struct field *field = &held->timeline->plan->machine.fields[hold->field];
+	const struct line_type *type = type_of(held);
 	const unsigned cell = held->laid->first_cell + col;
 	if (status != EXPRESSION_OK)
-		diagnose(held->diagnostics, RULE_HOLD_VALUE, hold->place, "\"%s\": %s, first in line %u (\"%s\"), cell %u (col %u)", hold->text,
-		         expression_status_words(status), held->line_number, type_name(held), cell, col);
+		line_faults_add(held->faults, RULE_HOLD_VALUE, hold->place, type,
+		                "\"%s\": %s, first in line %u (\"%s\"), cell %u (col %u)", hold->text,
+		                expression_status_words(status), held->line_number, type->name, cell, col);
 	else
-		diagnose(held->diagnostics, RULE_HOLD_VALUE, hold->place,
-		         "\"%s\" is %lld, but field \"%s\" of %u bits holds at most %u; first in line %u (\"%s\"), cell %u (col %u)", hold->text,
-		         (long long)value, field->name, field->high - field->low + 1, (unsigned)(field_mask(field) >> field->low),
-		         held->line_number, type_name(held), cell, col);
+		line_faults_add(held->faults, RULE_HOLD_VALUE, hold->place, type,
+		                "\"%s\" is %lld, but field \"%s\" of %u bits holds at most %u; first in line %u (\"%s\"),"
+		                " cell %u (col %u)", hold->text, (long long)value, field->name, field->high - field->low + 1,
+		                (unsigned)(field_mask(field) >> field->low), held->line_number, type->name, cell, col);
 	return false;
 }
 
@@ -38,12 +40,15 @@ static bool report_conflict(const struct held_region *held, const struct hold *h
 {
 	const struct plan *plan = held->timeline->plan;
 	const struct field *field = &plan->machine.fields[hold->field];
-	diagnose(held->diagnostics, RULE_HOLD_CONFLICT, hold->place,
-	         "field \"%s\" shares bits with a field that is held to another value, first in line %u (\"%s\"), cell %u (col %u)", field->name,
-	         held->line_number, type_name(held), held->laid->first_cell + col, col);
+	const struct line_type *type = type_of(held);
+	struct line_fault *fault =
+		line_faults_add(held->faults, RULE_HOLD_CONFLICT, hold->place, type,
+		                "field \"%s\" shares bits with a field that is held to another value, first in line %u"
+		                " (\"%s\"), cell %u (col %u)", field->name, held->line_number, type->name,
+		                held->laid->first_cell + col, col);
 	for (const struct hold *other = held->region->holds; other < hold; other++)
 		if ((field_mask(field) & field_mask(&plan->machine.fields[other->field])) != 0)
-			diagnose_also(held->diagnostics, other->place, "field \"%s\" is held here", plan->machine.fields[other->field].name);
+			line_fault_also(held->faults, fault, other->place, "field \"%s\" is held here", plan->machine.fields[other->field].name);
 	return false;
 }
 
@@ -89,13 +94,13 @@ static bool has_holds(const struct plan *plan)
 }
 
 // Evaluates a line; *wrong[type][region] keeps a region from being reported once for every line.
-static bool hold_line(struct timeline *timeline, struct diagnostics *diagnostics, uint32_t line_number, bool *const *wrong)
+static bool hold_line(struct timeline *timeline, struct line_faults *faults, uint32_t line_number, bool *const *wrong)
 {
 	const struct frame_line *line = &timeline->lines[line_number];
 	const struct line_type *type = &timeline->plan->lines[line->type];
 	bool good = true;
 	for (size_t index = 0; index < type->region_count; index++) {
-		const struct held_region held = {timeline, diagnostics, &type->regions[index], &timeline->types[line->type].regions[index],
+		const struct held_region held = {timeline, faults, &type->regions[index], &timeline->types[line->type].regions[index],
 		                                 line, line_number};
 		if (held.region->hold_count == 0 || wrong[line->type][index])
 			continue;
@@ -118,7 +123,7 @@ static bool **make_flags(struct timeline *timeline, struct arena *arena)
 	return wrong;
 }
 
-bool layout_holds(struct timeline *timeline, struct diagnostics *diagnostics)
+bool layout_holds(struct timeline *timeline, struct line_faults *faults, struct diagnostics *diagnostics)
 {
 	timeline->has_holds = has_holds(timeline->plan);
 	if (!timeline->has_holds)
@@ -132,6 +137,6 @@ bool layout_holds(struct timeline *timeline, struct diagnostics *diagnostics)
 	}
 	bool good = true;
 	for (uint32_t line = 0; line < timeline->line_count; line++)
-		good = hold_line(timeline, diagnostics, line, wrong) && good;
+		good = hold_line(timeline, faults, line, wrong) && good;
 	return good;
 }

@@ -2,12 +2,14 @@
 #ifndef SCANLATCH_LAYOUT_LAYOUT_H
 #define SCANLATCH_LAYOUT_LAYOUT_H
 
+#include "layout/line_faults.h"
 #include "layout/timeline.h"
 
 struct layout {
 	struct arena *arena;
 	const struct plan *plan;
 	struct diagnostics *diagnostics;
+	struct line_faults *faults; // of line types; for the others, diagnostics
 	struct laid_line *types;
 	uint64_t laid_cells;   // over all line types, kept within LIMIT_CELLS
 };
@@ -22,6 +24,6 @@ bool layout_cells(struct layout *layout, size_t type);
 bool layout_auto_stretch(struct layout *layout, size_t type);
 
 // Evaluates the holds of every cell of the frame into the timeline. False after reporting.
-bool layout_holds(struct timeline *timeline, struct diagnostics *diagnostics);
+bool layout_holds(struct timeline *timeline, struct line_faults *faults, struct diagnostics *diagnostics);
 
 #endif

@@ -7,11 +7,12 @@ struct walk {
 	struct fraction cells; // exact sum of the requested lengths, in cells
 };
 
-static bool report_inexact(struct layout *layout, const struct region *region)
+static bool report_inexact(struct layout *layout, const struct line_type *line, const struct region *region)
 {
-	diagnose(layout->diagnostics, RULE_BAD_QUANTITY, region->length_place,
-	         "region \"%s\": the exact position of its edge needs numbers beyond 64 bits", region->name);
-	diagnose_hint(layout->diagnostics, "give the time, or the clock's frequency, with fewer digits");
+	struct line_fault *fault =
+		line_faults_add(layout->faults, RULE_BAD_QUANTITY, region->length_place, line,
+		                "region \"%s\": the exact position of its edge needs numbers beyond 64 bits", region->name);
+	line_fault_hint(layout->faults, fault, "give the time, or the clock's frequency, with fewer digits");
 	return false;
 }
 
@@ -25,12 +26,12 @@ static bool requested_cells(const struct plan *plan, const struct region *region
 	return fraction_divide(region->ticks, fraction_whole(plan->clock.cell_ticks), cells);
 }
 
-static bool walk_region(struct layout *layout, struct walk *walk, const struct region *region)
+static bool walk_region(struct layout *layout, struct walk *walk, const struct line_type *line, const struct region *region)
 {
 	struct fraction cells;
 	if (requested_cells(layout->plan, region, &cells) && fraction_add(walk->cells, cells, &walk->cells))
 		return true;
-	return report_inexact(layout, region);
+	return report_inexact(layout, line, region);
 }
 
 // A change may make a region a fill that stands before the other: the later place in the file is the fault.
@@ -38,9 +39,10 @@ static void report_fills(struct layout *layout, const struct line_type *line, co
 {
 	const bool changed = left->length_place.line > right->length_place.line;
 	const struct region *first = changed ? right : left, *second = changed ? left : right;
-	diagnose(layout->diagnostics, RULE_DOUBLED_FILL, second->length_place, "line type \"%s\" has a second fill, in region \"%s\"",
-	         line->name, second->name);
-	diagnose_also(layout->diagnostics, first->length_place, "the first, in region \"%s\"", first->name);
+	struct line_fault *fault =
+		line_faults_add(layout->faults, RULE_DOUBLED_FILL, second->length_place, line,
+		                "line type \"%s\" has a second fill, in region \"%s\"", line->name, second->name);
+	line_fault_also(layout->faults, fault, first->length_place, "the first, in region \"%s\"", first->name);
 }
 
 static size_t find_fill(struct layout *layout, const struct line_type *line, bool *good)
@@ -57,9 +59,12 @@ static size_t find_fill(struct layout *layout, const struct line_type *line, boo
 		fill = index;
 	}
 	if (fill != SIZE_MAX && !line->has_cells) {
-		diagnose(layout->diagnostics, RULE_FILL_WITHOUT_CELLS, line->regions[fill].length_place,
-		         "region \"%s\" fills line type \"%s\", which does not say how many cells it has", line->regions[fill].name, line->name);
-		diagnose_hint(layout->diagnostics, "add cells: N to the line type");
+		const struct region *region = &line->regions[fill];
+		struct line_fault *fault =
+			line_faults_add(layout->faults, RULE_FILL_WITHOUT_CELLS, region->length_place, line,
+			                "region \"%s\" fills line type \"%s\", which does not say how many cells it has",
+			                region->name, line->name);
+		line_fault_hint(layout->faults, fault, "add cells: N to the line type");
 		*good = false;
 	}
 	return fill;
@@ -73,7 +78,7 @@ static bool find_edges(struct layout *layout, const struct line_type *line, size
 	struct walk walk = {FRACTION_ZERO};
 	edges[0] = 0;
 	for (size_t index = 0; index < forward; index++) {
-		if (!walk_region(layout, &walk, &line->regions[index]))
+		if (!walk_region(layout, &walk, line, &line->regions[index]))
 			return false;
 		edges[index + 1] = fraction_nearest(walk.cells);
 	}
@@ -83,10 +88,10 @@ static bool find_edges(struct layout *layout, const struct line_type *line, size
 	edges[count] = line->cells;
 	for (size_t index = count - 1; index > fill; index--) {
 		struct fraction edge;
-		if (!walk_region(layout, &walk, &line->regions[index]))
+		if (!walk_region(layout, &walk, line, &line->regions[index]))
 			return false;
 		if (!fraction_subtract(fraction_whole(line->cells), walk.cells, &edge))
-			return report_inexact(layout, &line->regions[index]);
+			return report_inexact(layout, line, &line->regions[index]);
 		edges[index] = fraction_nearest(edge);
 	}
 	return true;
@@ -96,9 +101,10 @@ static bool check_length(struct layout *layout, const struct line_type *line, si
 {
 	const int64_t total = edges[line->region_count];
 	if (fill != SIZE_MAX && edges[fill + 1] <= edges[fill]) {
-		diagnose(layout->diagnostics, RULE_LINE_LENGTH, line->regions[fill].length_place,
-		         "line type \"%s\" has %lld cells, but its other regions take %lld and leave none for the fill \"%s\"", line->name,
-		         (long long)line->cells, (long long)(line->cells - (edges[fill + 1] - edges[fill])), line->regions[fill].name);
+		line_faults_add(layout->faults, RULE_LINE_LENGTH, line->regions[fill].length_place, line,
+		                "line type \"%s\" has %lld cells, but its other regions take %lld and leave none for the"
+		                " fill \"%s\"", line->name, (long long)line->cells,
+		                (long long)(line->cells - (edges[fill + 1] - edges[fill])), line->regions[fill].name);
 		return false;
 	}
 	if (fill == SIZE_MAX && line->has_cells && total != line->cells) {
@@ -121,9 +127,9 @@ static bool check_regions(struct layout *layout, const struct line_type *line, s
 		const struct region *region = &line->regions[index];
 		if (index == fill || edges[index + 1] > edges[index])
 			continue;
-		diagnose(layout->diagnostics, RULE_REGION_EMPTY, region->length_place,
-		         "region \"%s\" of line type \"%s\" is rounded to nothing: both its edges fall on cell %lld", region->name, line->name,
-		         (long long)edges[index]);
+		line_faults_add(layout->faults, RULE_REGION_EMPTY, region->length_place, line,
+		                "region \"%s\" of line type \"%s\" is rounded to nothing: both its edges fall on cell %lld",
+		                region->name, line->name, (long long)edges[index]);
 		good = false;
 	}
 	return good;
@@ -140,11 +146,11 @@ static bool set_asked_ticks(struct layout *layout, const struct line_type *line,
 		struct fraction cells, *asked = &laid->regions[index].asked_ticks;
 		if (!requested_cells(layout->plan, region, &cells) || !fraction_multiply(cells, cell, asked) ||
 		    !fraction_add(others, *asked, &others))
-			return report_inexact(layout, region);
+			return report_inexact(layout, line, region);
 	}
 	struct fraction whole = fraction_whole(line->cells * layout->plan->clock.cell_ticks);
 	if (fill != SIZE_MAX && !fraction_subtract(whole, others, &laid->regions[fill].asked_ticks))
-		return report_inexact(layout, &line->regions[fill]);
+		return report_inexact(layout, line, &line->regions[fill]);
 	return true;
 }
 

@@ -42,51 +42,54 @@ static bool is_rounded(struct fraction ratio, int64_t whole)
 }
 
 // For lines that are far too short to close: the frequencies themselves are what does not fit.
-static void hint_ratio(struct layout *layout, struct fraction ratio, int64_t closing)
+static void hint_ratio(struct line_faults *faults, struct line_fault *fault, struct fraction ratio, int64_t closing)
 {
 	struct text decimal = {0};
 	const int64_t whole = fraction_nearest(ratio);
 	text_put_decimal(&decimal, ratio, 9);
 	if (is_rounded(ratio, whole)) {
-		diagnose_hint(layout->diagnostics,
-		              "the master clock is about %s times the subcarrier, not %" PRId64 " times; write subcarrier: master / %" PRId64,
-		              text_string(&decimal), whole, whole);
-		diagnose_hint(layout->diagnostics, "a frequency that was rounded can be given exactly, as a fraction such as 315/22 MHz");
+		line_fault_hint(faults, fault,
+		                "the master clock is about %s times the subcarrier, not %" PRId64 " times; write"
+		                " subcarrier: master / %" PRId64, text_string(&decimal), whole, whole);
+		line_fault_hint(faults, fault, "a frequency that was rounded can be given exactly, as a fraction such as 315/22 MHz");
 	} else {
-		diagnose_hint(layout->diagnostics,
-		              "the master clock is about %s times the subcarrier, so only multiples of %" PRId64
-		              " ticks would; let it be a small whole multiple, subcarrier: master / N",
-		              text_string(&decimal), closing);
+		line_fault_hint(faults, fault,
+		                "the master clock is about %s times the subcarrier, so only multiples of %" PRId64 " ticks"
+		                " would; let it be a small whole multiple, subcarrier: master / N", text_string(&decimal), closing);
 	}
 	text_release(&decimal);
 }
 
 // Says which line lengths would meet the phase, or why none of a usable length does.
-static void hint_lengths(struct layout *layout, const struct clock *clock, int64_t ticks, int64_t longest, int64_t closing)
+static void hint_lengths(struct line_faults *faults, struct line_fault *fault, const struct clock *clock, int64_t ticks,
+                         int64_t longest, int64_t closing)
 {
 	const int64_t below = ticks / closing * closing;
 	const int64_t above = below + closing;
 	struct fraction ratio;
 	if (closing > longest && fraction_divide(clock->master_hz, clock->subcarrier_hz, &ratio) && !fraction_is_whole(ratio))
-		hint_ratio(layout, ratio, closing);
+		hint_ratio(faults, fault, ratio, closing);
 	else if (below > 0)
-		diagnose_hint(layout->diagnostics, "line lengths of %" PRId64 " or %" PRId64 " ticks would, as any multiple of %" PRId64 " does", below,
-		              above, closing);
+		line_fault_hint(faults, fault,
+		                "line lengths of %" PRId64 " or %" PRId64 " ticks would, as any multiple of %" PRId64 " does",
+		                below, above, closing);
 	else
-		diagnose_hint(layout->diagnostics, "a line length of %" PRId64 " ticks would, as any multiple of it does", above);
+		line_fault_hint(faults, fault, "a line length of %" PRId64 " ticks would, as any multiple of it does", above);
 }
 
 static bool report_unreachable(struct layout *layout, size_t type, const struct region *region, uint32_t available, int64_t closing)
 {
 	const struct laid_line *laid = &layout->types[type];
+	const struct line_type *line = &layout->plan->lines[type];
 	const struct clock *clock = &layout->plan->clock;
 	const int64_t longest = laid->ticks + available * clock->stretch_ticks;
-	diagnose(layout->diagnostics, RULE_PHASE_UNREACHABLE, region->stretch_place,
-	         "line type \"%s\" has %" PRId64 " ticks, and up to %" PRId64 " with %u cell%s stretched by %" PRId64
-	         ": none of these lengths meets the phase",
-	         layout->plan->lines[type].name, laid->ticks, longest, available, available == 1 ? "" : "s", clock->stretch_ticks);
-	diagnose_also(layout->diagnostics, clock->phase_place, "the phase that is asked");
-	hint_lengths(layout, clock, laid->ticks, longest, closing);
+	struct line_fault *fault =
+		line_faults_add(layout->faults, RULE_PHASE_UNREACHABLE, region->stretch_place, line,
+		                "line type \"%s\" has %" PRId64 " ticks, and up to %" PRId64 " with %u cell%s stretched by"
+		                " %" PRId64 ": none of these lengths meets the phase", line->name, laid->ticks, longest,
+		                available, available == 1 ? "" : "s", clock->stretch_ticks);
+	line_fault_also(layout->faults, fault, clock->phase_place, "the phase that is asked");
+	hint_lengths(layout->faults, fault, clock, laid->ticks, longest, closing);
 	return false;
 }
 

@@ -10,13 +10,13 @@ static bool report_memory(const struct plan *plan, struct diagnostics *diagnosti
 	return false;
 }
 
-static bool lay_types(struct timeline *timeline, struct diagnostics *diagnostics)
+static bool lay_types(struct timeline *timeline, struct line_faults *faults, struct diagnostics *diagnostics)
 {
 	const struct plan *plan = timeline->plan;
 	timeline->types = arena_array(timeline->arena, plan->line_count, sizeof *timeline->types);
 	if (timeline->types == NULL)
 		return report_memory(plan, diagnostics);
-	struct layout layout = {timeline->arena, plan, diagnostics, timeline->types, 0};
+	struct layout layout = {timeline->arena, plan, diagnostics, faults, timeline->types, 0};
 	bool good = true;
 	for (size_t type = 0; type < plan->line_count; type++)
 		good = layout_regions(&layout, type) && layout_cells(&layout, type) && good;
@@ -71,6 +71,17 @@ static bool lay_frame(struct timeline *timeline, struct diagnostics *diagnostics
 	return true;
 }
 
+static bool lay_out(struct timeline *timeline, struct diagnostics *diagnostics)
+{
+	struct line_faults *faults = line_faults_create(timeline->arena, diagnostics);
+	if (faults == NULL)
+		return report_memory(timeline->plan, diagnostics);
+	const bool good = lay_types(timeline, faults, diagnostics) && measure_frame(timeline, diagnostics) &&
+	                  lay_frame(timeline, diagnostics) && layout_holds(timeline, faults, diagnostics);
+	line_faults_report(faults);
+	return good;
+}
+
 struct timeline *timeline_create(const struct plan *plan, struct diagnostics *diagnostics)
 {
 	struct arena *arena = arena_create();
@@ -82,8 +93,7 @@ struct timeline *timeline_create(const struct plan *plan, struct diagnostics *di
 	}
 	timeline->arena = arena;
 	timeline->plan = plan;
-	if (lay_types(timeline, diagnostics) && measure_frame(timeline, diagnostics) && lay_frame(timeline, diagnostics) &&
-	    layout_holds(timeline, diagnostics))
+	if (lay_out(timeline, diagnostics))
 		return timeline;
 	arena_destroy(arena);
 	return NULL;
