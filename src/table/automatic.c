@@ -260,6 +260,25 @@ bool automatic_label(struct automatic_field *field, const struct assignment *ass
 	return automatic_arrange(field, arena) || faults_memory(faults);
 }
 
+bool automatic_is_uncut(const struct automatic_field *field)
+{
+	const struct constraints *constraints = field->constraints;
+	const struct plan *plan = constraints->plan;
+	const uint32_t mask = field_mask(field->field);
+	for (uint32_t family = 0; family < constraints->families.count; family++) {
+		const uint32_t held = (uint32_t)(constraints->families.keys[family] >> 24) & mask;
+		if (held != 0 && held != mask)
+			return false;
+	}
+	for (size_t index = 0; index < plan->signal_count; index++) {
+		const struct signal *signal = &plan->signals[index];
+		if (signal->origin == FROM_FIELD && signal->field != field->index &&
+		    (field_mask(&plan->machine.fields[signal->field]) & mask) != 0)
+			return false;
+	}
+	return true;
+}
+
 void automatic_assert(struct automatic_field *field)
 {
 	for (uint32_t value = 0; value < field->values; value++) {

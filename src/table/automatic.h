@@ -1,9 +1,9 @@
 // codes: auto. Gives each value of a field to one of the patterns that cells ask of the field. For the table's own use.
 //
-// With nothing held in the field but whole values, all values that no cell holds are alike, and patterns do not compete
-// but for their number; each pattern then gets as few as it must, growing only when matching has shown that it needs
-// more, so that codes are found whenever there are any. Where holds cut through a field, or fields with automatic codes
-// overlap, small fields are searched through.
+// With nothing held in the field but whole values, and no other field with signals sharing its bits, all values that no
+// cell holds are alike, and patterns do not compete but for their number; each pattern then gets as few as it must,
+// growing only when matching has shown that it needs more. For a single such field codes are found whenever there are
+// any, and a shortage is proved. Otherwise labels are found so where that goes well, and searched for where it does not.
 #ifndef SCANLATCH_TABLE_AUTOMATIC_H
 #define SCANLATCH_TABLE_AUTOMATIC_H
 
@@ -50,11 +50,16 @@ bool automatic_create(struct arena *arena, const struct constraints *constraints
 bool automatic_label(struct automatic_field *field, const struct assignment *assignment, struct arena *arena,
                      struct faults *faults);
 
-enum repair { REPAIR_DONE, REPAIR_SHORT, REPAIR_HOPELESS };
+enum repair { REPAIR_DONE, REPAIR_SHORT, REPAIR_HOPELESS, REPAIR_BEYOND };
 
+// REPAIR_BEYOND is the solver's: no codes can mend the fault.
+//
 // After a fault at a cell: gives its pattern more values of the field. REPAIR_SHORT: no other pattern can spare them;
 // REPAIR_HOPELESS: its pattern has all values that will do. Neither changes labels.
 enum repair automatic_repair(struct automatic_field *field, const struct fault *fault);
+
+// True if all values that no cell holds are alike, so that for a field on its own a shortage is proved. Cannot fail.
+bool automatic_is_uncut(const struct automatic_field *field);
 
 // The fault of a field whose patterns need more values than there are. Cannot fail.
 struct fault automatic_fault(const struct automatic_field *field, uint32_t cell);

@@ -16,8 +16,9 @@ struct fault {
 	size_t field;       // index of a field, or NO_SUBJECT
 	size_t signal;      // index of a signal, or NO_SUBJECT
 	uint32_t state;     // NO_STATE where there is none
-	uint32_t needed;    // a count; for a value: what was expected
+	uint32_t needed;    // a count, 0: not known; for a value: what was expected
 	uint32_t available; // a count; for a value: what was found
+	bool proved;        // codes of which no count is known: that there are none, not only that none were found
 };
 
 struct faults {

@@ -279,9 +279,24 @@ static void report_start_conflict(const struct reporter *reporter, const struct 
 		report_start_signal(reporter, fault);
 }
 
+static void report_codes_not_found(const struct reporter *reporter, const struct fault *fault,
+                                   const struct signal *signal)
+{
+	diagnose(reporter->diagnostics, RULE_CODES_SHORT, signal->place,
+	         "codes: auto: %s of field \"%s\" for \"%s\" with which every cell has a state of its own; the first cell "
+	         "without one is %s",
+	         fault->proved ? "there are no codes" : "found no codes", field_name(reporter, fault->field), signal->name,
+	         cell_words(reporter, fault->cell));
+	diagnose_hint(reporter->diagnostics, "list the codes, or give the field or the state another bit");
+}
+
 static void report_codes_short(const struct reporter *reporter, const struct fault *fault)
 {
 	const struct signal *signal = &reporter->plan->signals[fault->signal];
+	if (fault->needed == 0) {
+		report_codes_not_found(reporter, fault, signal);
+		return;
+	}
 	diagnose(reporter->diagnostics, RULE_CODES_SHORT, signal->place,
 	         "codes: auto needs %u codes of field \"%s\", but %u are available; the cells that lack them begin at %s",
 	         fault->needed, field_name(reporter, fault->field), fault->available, cell_words(reporter, fault->cell));

@@ -1,17 +1,16 @@
-// The last resort of codes: auto: trying all labels of small fields. For the table's own use.
+// The last resort of codes: auto: a search for labels. For the table's own use.
 #ifndef SCANLATCH_TABLE_SEARCH_H
 #define SCANLATCH_TABLE_SEARCH_H
 
 #include "table/automatic.h"
 
-struct label_search;
+enum search_result { SEARCH_FOUND, SEARCH_NONE, SEARCH_GAVE_UP, SEARCH_MEMORY };
 
-// A search over all labels of all values that no cell holds, which it sets to the first choice. Memory is the arena's.
-// NULL when memory is out or (then *too_many is set) when there are too many choices to try with `work` steps each.
-struct label_search *label_search_create(struct arena *arena, struct automatic_field *fields, size_t count,
-                                         uint64_t work, bool *too_many);
-
-// Sets the labels to the next choice; false when there is none. Cannot fail.
-bool label_search_next(struct label_search *search);
+// Searches for labels of fields, as automatic_label has left them, with which every cell can have a state. SEARCH_FOUND:
+// they are set. Otherwise they are as they were, and *fault says (but for SEARCH_MEMORY) which cell is the first to
+// lack a code or a state; SEARCH_NONE: it is proved that there are no such labels. The assignment's states and owners
+// are used. Memory is taken from the arena.
+enum search_result search_labels(struct automatic_field *fields, size_t count, struct assignment *assignment,
+                                 struct arena *arena, struct fault *fault);
 
 #endif

@@ -1,5 +1,7 @@
 #include "table/solve.h"
 
+#include <string.h>
+
 #include "base/arena.h"
 #include "table/search.h"
 #include "table/walk.h"
@@ -63,22 +65,60 @@ static enum repair repair_codes(struct solver *solver, const struct fault *fault
 	return best;
 }
 
+// Copies the labels of all fields to or from `labels`.
+static void copy_labels(struct solver *solver, uint32_t *labels, bool back)
+{
+	for (size_t index = 0; index < solver->automatic_count; index++) {
+		const struct automatic_field *field = &solver->automatic[index];
+		if (back)
+			memcpy(field->label, labels, field->values * sizeof *labels);
+		else
+			memcpy(labels, field->label, field->values * sizeof *labels);
+		labels += field->values;
+	}
+}
+
+// Tries labels that were found for quieter ones, which may be too few for the cells, and falls back on them.
+static bool try_arranged(struct solver *solver, struct arena *arena, struct faults *faults)
+{
+	struct faults ignored = {.count = 0};
+	size_t values = 0;
+	for (size_t index = 0; index < solver->automatic_count; index++)
+		values += solver->automatic[index].values;
+	uint32_t *labels = arena_array(arena, values, sizeof *labels);
+	if (labels == NULL)
+		return faults_memory(faults);
+	copy_labels(solver, labels, false);
+	for (size_t index = 0; index < solver->automatic_count; index++)
+		if (!automatic_arrange(&solver->automatic[index], arena))
+			return faults_memory(faults);
+	if (try_codes(solver, true, &ignored))
+		return true;
+	copy_labels(solver, labels, true);
+	return ignored.memory_out ? faults_memory(faults) : try_codes(solver, true, faults);
+}
+
+static bool search_codes_in(struct solver *solver, struct arena *arena, struct faults *faults)
+{
+	struct fault fault;
+	code_space_fill(&solver->codes, NULL, 0);
+	const enum search_result result =
+		search_labels(solver->automatic, solver->automatic_count, &solver->assignment, arena, &fault);
+	if (result == SEARCH_MEMORY)
+		return faults_memory(faults);
+	faults->count = 0;
+	if (result == SEARCH_FOUND)
+		return try_arranged(solver, arena, faults);
+	faults_add(faults, fault);
+	return false;
+}
+
 static bool search_codes(struct solver *solver, struct faults *faults)
 {
-	const uint64_t work = (uint64_t)solver->constraints->period + solver->constraints->state_count;
-	bool too_many = false;
-	struct label_search *search =
-		label_search_create(solver->arena, solver->automatic, solver->automatic_count, work, &too_many);
-	if (search == NULL)
-		return !too_many && faults_memory(faults);
-	do {
-		struct faults ignored = {.count = 0};
-		if (try_codes(solver, false, &ignored))
-			return try_codes(solver, true, faults);
-		if (ignored.memory_out)
-			return faults_memory(faults);
-	} while (label_search_next(search));
-	return false;
+	struct arena *arena = arena_create();
+	const bool found = arena != NULL ? search_codes_in(solver, arena, faults) : faults_memory(faults);
+	arena_destroy(arena);
+	return found;
 }
 
 static bool label_fields(struct solver *solver, struct faults *faults)
@@ -127,6 +167,18 @@ static bool is_beyond_codes(const struct solver *solver, const struct fault *fau
 	return fault->rule == RULE_START_CONFLICT;
 }
 
+// Drops the faults that a choice of codes may mend, if there are others, which it returns.
+static size_t keep_beyond_codes(const struct solver *solver, struct faults *faults)
+{
+	size_t kept = 0;
+	for (size_t index = 0; index < faults->count; index++)
+		if (is_beyond_codes(solver, &faults->list[index]))
+			faults->list[kept++] = faults->list[index];
+	if (kept > 0)
+		faults->count = kept;
+	return kept;
+}
+
 // Tries codes, with more of them for the cells at fault, as long as that is possible.
 static enum repair try_repairs(struct solver *solver, struct fault *shortage, struct faults *faults)
 {
@@ -135,8 +187,8 @@ static enum repair try_repairs(struct solver *solver, struct fault *shortage, st
 		faults->count = 0;
 		if (try_codes(solver, true, faults))
 			return REPAIR_DONE;
-		if (faults->memory_out || is_beyond_codes(solver, &faults->list[0]))
-			return REPAIR_HOPELESS;
+		if (faults->memory_out || keep_beyond_codes(solver, faults) > 0)
+			return REPAIR_BEYOND;
 		repair = repair_codes(solver, &faults->list[0], shortage);
 	}
 	return repair;
@@ -146,17 +198,14 @@ static enum repair try_repairs(struct solver *solver, struct fault *shortage, st
 static bool try_automatic(struct solver *solver, struct faults *faults)
 {
 	struct fault shortage = fault_at(RULE_CODES_SHORT, NO_CELL);
-	struct faults ignored = {.count = 0};
 	if (!label_fields(solver, faults))
 		return false;
 	const enum repair repair = try_repairs(solver, &shortage, faults);
-	if (repair != REPAIR_SHORT)
+	if (repair == REPAIR_DONE || repair == REPAIR_BEYOND)
 		return repair == REPAIR_DONE;
-	if (search_codes(solver, &ignored))
-		return true;
-	if (ignored.memory_out)
-		return faults_memory(faults);
-	if (!holds_codes(solver, faults->list[0].cell)) {
+	if (solver->automatic_count > 1 || !automatic_is_uncut(&solver->automatic[0]))
+		return search_codes(solver, faults);
+	if (repair == REPAIR_SHORT) {
 		faults->count = 0;
 		faults_add(faults, shortage);
 	}

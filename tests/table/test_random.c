@@ -1,23 +1,9 @@
 // Random tiny machines: a table is made exactly when a plain matching of cells with states, over all periods of the
 // signals and all choices of codes, finds one; and with the shortest such period.
 
-#include "builder.h"
+#include "random_machine.h"
 
-#define STATES 64
 #define MACHINES 10000
-
-// xorshift (Marsaglia, 2003); the same numbers in every run.
-struct numbers {
-	uint64_t state;
-};
-
-static uint32_t below(struct numbers *numbers, uint32_t limit)
-{
-	numbers->state ^= numbers->state << 13;
-	numbers->state ^= numbers->state >> 7;
-	numbers->state ^= numbers->state << 17;
-	return (uint32_t)((numbers->state >> 20) % limit);
-}
 
 // A machine as the plain search sees it: each signal's codes as a bit set of field values.
 struct machine_case {
@@ -103,74 +89,6 @@ static bool can_solve(struct machine_case *machine, int start)
 	}
 }
 
-static void add_fields(struct bench *bench, struct numbers *numbers, unsigned bits, unsigned count, unsigned widest)
-{
-	for (unsigned index = 0; index < count; index++) {
-		const unsigned low = below(numbers, bits);
-		unsigned high = low + below(numbers, widest);
-		if (high >= bits)
-			high = bits - 1;
-		bench_field(bench, "field", high, low);
-	}
-}
-
-static void add_signals(struct bench *bench, struct numbers *numbers, unsigned count, unsigned automatic)
-{
-	for (unsigned index = 0; index < count; index++) {
-		const size_t field = below(numbers, (uint32_t)bench->plan.machine.field_count);
-		const unsigned width = bench->fields[field].high - bench->fields[field].low + 1;
-		uint32_t codes[STATES];
-		size_t codes_count = 0;
-		for (uint32_t code = 0; code < 1u << width; code++)
-			if (below(numbers, 2) == 0)
-				codes[codes_count++] = code;
-		if (codes_count == 0)
-			codes[codes_count++] = below(numbers, 1u << width);
-		const size_t signal =
-			bench_coded(bench, "signal", field, index < automatic ? NULL : codes, index < automatic ? 0 : codes_count);
-		bench->signals[signal].lead_cells = (int64_t)below(numbers, 5) - 2;
-	}
-}
-
-// Cells drawn from a hidden assignment, so that many machines can be solved, though some cells are changed afterwards.
-static void add_cells(struct bench *bench, struct numbers *numbers, uint32_t cells)
-{
-	const struct plan *plan = &bench->plan;
-	const uint32_t states = (uint32_t)1 << plan->machine.state_bits;
-	uint64_t sets[BENCH_SIGNALS];
-	uint32_t hidden[STATES];
-	for (size_t index = 0; index < plan->signal_count; index++) {
-		sets[index] = plan->signals[index].auto_codes ? below(numbers, 1u << 30) : 0;
-		for (size_t code = 0; code < plan->signals[index].code_count; code++)
-			sets[index] |= (uint64_t)1 << plan->signals[index].codes[code];
-	}
-	for (uint32_t state = 0; state < states; state++) {
-		const uint32_t other = below(numbers, state + 1);
-		hidden[state] = hidden[other];
-		hidden[other] = state;
-	}
-	bench_region(bench, "all", cells, 0);
-	for (size_t field = 0; field < plan->machine.field_count && below(numbers, 4) != 0; field++)
-		bench_add_hold(bench, field);
-	for (uint32_t cell = 0; cell < cells; cell++) {
-		const uint32_t state = below(numbers, 12) == 0 ? below(numbers, states) : hidden[cell];
-		for (size_t index = 0; index < plan->signal_count; index++) {
-			const int64_t led = (((int64_t)cell + plan->signals[index].lead_cells) % cells + cells) % cells;
-			const uint32_t value = field_value(&plan->machine.fields[plan->signals[index].field], state);
-			bench->laid.asserted[led] |= (sets[index] >> value & 1) << index;
-		}
-		const uint32_t held = below(numbers, 20) == 0 ? below(numbers, states) : state;
-		for (size_t field = 0; field < bench->regions[0].hold_count; field++) {
-			const uint32_t mask = field_mask(&bench->fields[field]);
-			if (below(numbers, 3) == 0)
-				bench->timeline.hold_mask[cell] |= mask;
-			bench->timeline.hold_value[cell] = held & bench->timeline.hold_mask[cell];
-		}
-	}
-	if (below(numbers, 3) == 0)
-		bench_start(bench, below(numbers, 2) == 0 ? hidden[0] : below(numbers, states));
-}
-
 static bool has_period(const struct timeline *timeline, uint32_t period)
 {
 	for (uint32_t cell = 0; cell < timeline->cell_count; cell++)
@@ -211,61 +129,76 @@ struct variety {
 	unsigned least_bits, bit_choices;
 	unsigned field_choices, widest;
 	unsigned signal_choices, automatic_choices;
+	uint32_t machines; // 0: MACHINES
 };
 
 // Checks machines of a variety; of these some must have a table and some not, or the comparison would show little.
 static void check_variety(const struct variety *variety, uint64_t seed)
 {
 	struct numbers numbers = {seed};
+	const uint32_t machines = variety->machines != 0 ? variety->machines : MACHINES;
 	uint32_t solved = 0;
-	for (uint32_t number = 0; number < MACHINES; number++) {
+	for (uint32_t number = 0; number < machines; number++) {
 		const unsigned bits = variety->least_bits + below(&numbers, variety->bit_choices);
 		struct bench *bench = bench_create(bits, STATES);
 		add_fields(bench, &numbers, bits, 1 + below(&numbers, variety->field_choices), variety->widest);
 		const unsigned automatic =
 			variety->automatic_choices == 0 ? 0 : 1 + below(&numbers, variety->automatic_choices);
 		add_signals(bench, &numbers, automatic + below(&numbers, variety->signal_choices), automatic);
-		add_cells(bench, &numbers, 1 + below(&numbers, 1u << bits));
+		add_cells(bench, &numbers, 1 + below(&numbers, 1u << bits), true);
 		solved += check_machine(bench);
 		bench_destroy(bench);
 	}
-	assert_in_range(solved, MACHINES / 20, MACHINES - MACHINES / 20);
+	assert_in_range(solved, machines / 20, machines - machines / 20);
 }
 
 static void test_holds(void **state)
 {
 	(void)state;
-	check_variety(&(struct variety){2, 3, 4, 4, 1, 0}, 20261);
+	check_variety(&(struct variety){2, 3, 4, 4, 1, 0, 0}, 20261);
 }
 
 static void test_listed_codes(void **state)
 {
 	(void)state;
-	check_variety(&(struct variety){2, 3, 3, 3, 4, 0}, 20262);
+	check_variety(&(struct variety){2, 3, 3, 3, 4, 0, 0}, 20262);
 }
 
 static void test_overlapping_fields(void **state)
 {
 	(void)state;
-	check_variety(&(struct variety){4, 1, 5, 4, 3, 0}, 20263);
+	check_variety(&(struct variety){4, 1, 5, 4, 3, 0, 0}, 20263);
 }
 
 static void test_many_states(void **state)
 {
 	(void)state;
-	check_variety(&(struct variety){5, 2, 6, 5, 2, 0}, 20266);
+	check_variety(&(struct variety){5, 2, 6, 5, 2, 0, 0}, 20266);
 }
 
 static void test_automatic_codes(void **state)
 {
 	(void)state;
-	check_variety(&(struct variety){2, 3, 1, 3, 3, 1}, 20264);
+	check_variety(&(struct variety){2, 3, 1, 3, 3, 1, 0}, 20264);
 }
 
 static void test_automatic_fields(void **state)
 {
 	(void)state;
-	check_variety(&(struct variety){2, 3, 3, 2, 2, 2}, 20265);
+	check_variety(&(struct variety){2, 3, 3, 2, 2, 2, 0}, 20265);
+}
+
+// Fields of up to 4 codes that share bits, all codes to be chosen, with holds and starts that cut through them.
+static void test_automatic_overlaps(void **state)
+{
+	(void)state;
+	check_variety(&(struct variety){3, 1, 4, 2, 2, 3, 3000}, 20267);
+}
+
+static void test_automatic_wide(void **state)
+{
+	(void)state;
+	check_variety(&(struct variety){4, 1, 3, 3, 1, 2, 300}, 20268);
 }
 
 int main(void)
@@ -277,6 +210,8 @@ int main(void)
 		cmocka_unit_test(test_many_states),
 		cmocka_unit_test(test_automatic_codes),
 		cmocka_unit_test(test_automatic_fields),
+		cmocka_unit_test(test_automatic_overlaps),
+		cmocka_unit_test(test_automatic_wide),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }
