@@ -151,27 +151,46 @@ const char *quantity_status_words(enum quantity_status status)
 	return "the quantity is wrong";
 }
 
-const char *dimension_units(enum dimension dimension)
+// "tick" has the plural right after it in the table.
+static bool has_plural(size_t index)
 {
-	switch (dimension) {
-	case DIMENSION_FREQUENCY:
-		return "Hz, kHz or MHz";
-	case DIMENSION_TIME:
-		return "s, ms, us or ns";
-	case DIMENSION_TICKS:
-		return "ticks";
-	case DIMENSION_DOTS:
-		return "dots";
-	case DIMENSION_CELLS:
-		return "cells";
-	case DIMENSION_LINES:
-		return "lines";
-	case DIMENSION_BITS:
-		return "bits";
-	case DIMENSION_PPM:
-		return "ppm";
+	const size_t length = strlen(units[index].name);
+	const struct unit *next = index + 1 < sizeof units / sizeof units[0] ? &units[index + 1] : NULL;
+	return next != NULL && strncmp(next->name, units[index].name, length) == 0 && strcmp(next->name + length, "s") == 0;
+}
+
+size_t dimension_units(enum dimension dimension, const char **names)
+{
+	size_t count = 0;
+	for (size_t index = 0; index < sizeof units / sizeof units[0]; index++)
+		if (units[index].dimension == dimension && !has_plural(index))
+			names[count++] = units[index].name;
+	return count;
+}
+
+static char lower_case(char byte)
+{
+	return byte >= 'A' && byte <= 'Z' ? (char)(byte - 'A' + 'a') : byte;
+}
+
+static bool equal_but_case(const char *left, const char *right)
+{
+	while (*left != '\0' && lower_case(*left) == lower_case(*right)) {
+		left++;
+		right++;
 	}
-	return "units";
+	return *left == *right;
+}
+
+const char *unit_meant(const char *text, const char *const *names, size_t count)
+{
+	const char *unit = text + strcspn(text, "ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz\xC2\xCE");
+	if (strcmp(unit, "\xC2\xB5s") == 0 || strcmp(unit, "\xCE\xBCs") == 0) // U+00B5, micro sign, and U+03BC, Greek mu
+		unit = "us";
+	for (size_t index = 0; index < count; index++)
+		if (equal_but_case(unit, names[index]))
+			return names[index];
+	return NULL;
 }
 
 // The value of a digit of any base up to 16, or 16 if the byte is none.

@@ -1,8 +1,9 @@
-// Numbers, quantities, bit ranges and truth values, read exactly from a scalar's text.
+// Numbers, quantities, bit ranges and truth values, read exactly from the text of a value.
 #ifndef SCANLATCH_PLAN_QUANTITY_H
 #define SCANLATCH_PLAN_QUANTITY_H
 
 #include <stdbool.h>
+#include <stddef.h>
 #include <stdint.h>
 
 #include "base/fraction.h"
@@ -39,8 +40,14 @@ enum quantity_status quantity_parse(const char *text, struct quantity *result);
 // What a status means, as words for a diagnostic ("a number needs a unit"). Cannot fail.
 const char *quantity_status_words(enum quantity_status status);
 
-// The names of the units of a dimension, for messages ("Hz, kHz or MHz"). Cannot fail.
-const char *dimension_units(enum dimension dimension);
+#define UNITS_LIMIT 18 // of all dimensions
+
+// Puts the names of the units of a dimension, for messages, the plural of those that have one; returns how many. Cannot fail.
+size_t dimension_units(enum dimension dimension, const char **names);
+
+// The unit among the candidates that a text with an unknown one seems to mean: in other case ("MHZ"), or with the micro
+// sign for us. NULL if none. Cannot fail.
+const char *unit_meant(const char *text, const char *const *names, size_t count);
 
 // Reads a whole number, decimal or 0x…, unsigned, no sign and no spaces, all of text. False if malformed or above 2^63-1.
 bool whole_number_parse(const char *text, int64_t *result);

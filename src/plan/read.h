@@ -40,6 +40,12 @@ bool read_mapping(struct reader *reader, const struct node *node, const char *wh
 // True if node is of the kind; else reports "WHAT: wanted a list, found …".
 bool expect_kind(struct reader *reader, const struct node *node, enum node_kind kind, const char *what);
 
+// The same for a list of single values: adds the hint "write [VALUE]" for one that stands alone.
+bool expect_values(struct reader *reader, const struct node *node, const char *what);
+
+// True if a mapping has an unknown key that seems to mean keys[wanted]: then that one is not missing too. Cannot fail.
+bool key_is_misspelt(const struct node *mapping, const struct key *keys, size_t count, size_t wanted);
+
 // Each read_… below returns false after reporting, and then leaves *result as it was. `what` names the value in messages.
 bool read_scalar(struct reader *reader, const struct node *node, const char *what, const char **result);
 bool read_whole(struct reader *reader, const struct node *node, const char *what, int64_t least, int64_t most, int64_t *result);
@@ -60,7 +66,7 @@ bool check_identifier(struct reader *reader, const struct node *node, const char
 // Checks names of regions and line types: printable, 1 to 40 characters, no quotes.
 bool check_printable_name(struct reader *reader, const struct node *node, const char *what);
 
-// The candidate nearest to a misspelt word, or NULL if none is near.
+// The candidate nearest to a misspelt word, or NULL if none is near; none is near a number.
 const char *nearest_word(const char *word, const char *const *candidates, size_t count);
 // Adds the hint "did you mean …" for a misspelt word, or, if none is near, lists the candidates.
 void hint_words(struct reader *reader, const char *word, const char *const *candidates, size_t count);

@@ -43,7 +43,7 @@ static void sort_grades(struct access_grade *grades, size_t count)
 
 static void read_grades(struct reader *reader, const struct node *node, struct part *part)
 {
-	if (!expect_kind(reader, node, NODE_LIST, "access"))
+	if (!expect_values(reader, node, "access"))
 		return;
 	if (node->count == 0 || node->count > 64) {
 		diagnose(reader->diagnostics, RULE_TOO_MANY, node->place, "access: wanted 1 to 64 grades, found %zu", node->count);

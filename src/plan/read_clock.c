@@ -170,6 +170,7 @@ void read_clock(struct reader *reader, const struct node *node)
 	if (values[CLOCK_ACCURACY] != NULL)
 		read_accuracy(reader, values[CLOCK_ACCURACY]);
 	if (values[CLOCK_PHASE] != NULL)
-		read_phase(reader, values[CLOCK_PHASE], values[CLOCK_SUBCARRIER] != NULL);
+		read_phase(reader, values[CLOCK_PHASE], values[CLOCK_SUBCARRIER] != NULL ||
+		                                                key_is_misspelt(node, clock_keys, CLOCK_KEYS, CLOCK_SUBCARRIER));
 	reader->clock_known = diagnostics_error_count(reader->diagnostics) == errors_before;
 }

@@ -40,7 +40,7 @@ static bool read_block(struct reader *reader, const struct node *node, struct bl
 	if (!read_mapping(reader, node, "a block of the frame", block_keys, BLOCK_KEYS, values))
 		return false;
 	if (values[BLOCK_REPEAT] != NULL)
-		read_whole(reader, values[BLOCK_REPEAT], "repeat", 1, INT64_MAX / 2, &block->repeat);
+		read_whole(reader, values[BLOCK_REPEAT], "repeat", 1, LIMIT_LINES, &block->repeat);
 	if (values[BLOCK_LINE] != NULL)
 		find_line(reader, values[BLOCK_LINE], &block->line_type);
 	if (block->repeat <= LIMIT_LINES - *lines) {

@@ -87,13 +87,15 @@ static void read_assert(struct reader *reader, const struct node *node, struct r
 {
 	const struct plan *plan = reader->plan;
 	region->assert_mask = 0;
-	if (!expect_kind(reader, node, NODE_LIST, "assert"))
+	if (!expect_values(reader, node, "assert"))
 		return;
 	for (size_t index = 0; index < node->count; index++) {
 		const char *name;
 		if (!read_scalar(reader, node->items[index], "assert", &name))
 			continue;
 		const size_t signal = find_signal(plan, name);
+		if (signal == SIZE_MAX && plan->signal_count == 0 && !reader->signals_known)
+			continue; // `signals` itself was reported
 		if (signal == SIZE_MAX) {
 			const char *names[LIMIT_SIGNALS];
 			for (size_t other = 0; other < plan->signal_count; other++)
@@ -206,6 +208,15 @@ static void read_region_keys(struct reader *reader, const struct node *node, con
 		read_holds(reader, values[REGION_HOLD], region);
 }
 
+// True if a region has a length, or a misspelt one, which was reported.
+static bool has_length(const struct node *node, const struct node **values)
+{
+	bool found = false;
+	for (size_t key = REGION_CELLS; key <= REGION_FILL; key++)
+		found = found || values[key] != NULL || key_is_misspelt(node, region_keys, REGION_KEYS, key);
+	return found;
+}
+
 static void read_region(struct reader *reader, const struct node *node, struct region *region)
 {
 	const struct node *values[REGION_KEYS];
@@ -218,7 +229,7 @@ static void read_region(struct reader *reader, const struct node *node, struct r
 	if (values[REGION_NAME] != NULL && expect_kind(reader, values[REGION_NAME], NODE_SCALAR, "region") &&
 	    check_printable_name(reader, values[REGION_NAME], "region"))
 		region->name = values[REGION_NAME]->text;
-	if (values[REGION_CELLS] == NULL && values[REGION_TIME] == NULL && values[REGION_FILL] == NULL) {
+	if (!has_length(node, values)) {
 		diagnose(reader->diagnostics, RULE_REGION_LENGTH, node->place, "region \"%s\" has no length", region->name);
 		diagnose_hint(reader->diagnostics, "give it one of cells: N, time: T and fill: true");
 	}
@@ -282,9 +293,25 @@ static struct region *changed_region(struct reader *reader, const struct node *n
 	return NULL;
 }
 
+// True if no earlier change names the region; *change is where that one does, or NULL.
+static bool is_first_change(struct reader *reader, const struct node *name, const struct node **change)
+{
+	if (*change != NULL) {
+		diagnose(reader->diagnostics, RULE_DOUBLED_NAME, name->place, "region \"%s\" is changed twice", name->text);
+		diagnose_also(reader->diagnostics, (*change)->place, "the first change");
+		diagnose_hint(reader->diagnostics, "put all keys that change into one of them");
+		return false;
+	}
+	*change = name;
+	return true;
+}
+
 static void read_changes(struct reader *reader, const struct node *node, struct line_type *line)
 {
 	if (!expect_kind(reader, node, NODE_LIST, "change"))
+		return;
+	const struct node **changes = reader_array(reader, line->region_count, sizeof *changes);
+	if (changes == NULL)
 		return;
 	for (size_t index = 0; index < node->count; index++) {
 		const struct node *values[REGION_KEYS];
@@ -292,7 +319,7 @@ static void read_changes(struct reader *reader, const struct node *node, struct 
 		    !expect_kind(reader, values[REGION_NAME], NODE_SCALAR, "region"))
 			continue;
 		struct region *region = changed_region(reader, values[REGION_NAME], line);
-		if (region != NULL)
+		if (region != NULL && is_first_change(reader, values[REGION_NAME], &changes[region - line->regions]))
 			read_region_keys(reader, node->items[index], values, region);
 	}
 }
@@ -357,6 +384,11 @@ static void read_line_chain(struct reader *reader, struct pending_line *pending,
 		read_line(reader, pending, chain[--length]);
 }
 
+static bool is_misspelt(const struct node *node, const struct node **values, size_t key)
+{
+	return values[key] == NULL && key_is_misspelt(node, line_keys, LINE_KEYS, key);
+}
+
 static void read_line_head(struct reader *reader, const struct node *node, struct pending_line *pending)
 {
 	const struct plan *plan = reader->plan;
@@ -365,7 +397,9 @@ static void read_line_head(struct reader *reader, const struct node *node, struc
 	pending->good = read_mapping(reader, node, "a line type", line_keys, LINE_KEYS, values);
 	if (!pending->good)
 		return;
-	if ((values[LINE_REGIONS] == NULL) == (values[LINE_LIKE] == NULL)) {
+	if (is_misspelt(node, values, LINE_REGIONS) || is_misspelt(node, values, LINE_LIKE)) {
+		pending->good = false;
+	} else if ((values[LINE_REGIONS] == NULL) == (values[LINE_LIKE] == NULL)) {
 		diagnose(reader->diagnostics, RULE_MISSING_KEY, node->place, "a line type needs either \"regions\" or \"like\"%s",
 		         values[LINE_LIKE] != NULL ? ", not both" : "");
 		pending->good = false;

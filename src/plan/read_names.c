@@ -95,6 +95,8 @@ static unsigned edit_distance(const char *left, const char *right)
 const char *nearest_word(const char *word, const char *const *candidates, size_t count)
 {
 	const char *best = NULL;
+	if (word[strspn(word, "0123456789.,-")] == '\0')
+		return NULL;
 	unsigned best_distance = strlen(word) <= 3 ? 2 : 3;
 	for (size_t index = 0; index < count; index++) {
 		const unsigned distance = edit_distance(word, candidates[index]);

@@ -78,9 +78,10 @@ static bool is_other_document(struct reader *reader, const struct node *root)
 	return false;
 }
 
-static void hint_board(struct reader *reader, const struct node **values)
+static void hint_board(struct reader *reader, const struct node *root, const struct node **values)
 {
-	if (values[PLAN_LINES] == NULL && values[PLAN_FRAME] == NULL && values[PLAN_MACHINE] != NULL)
+	if (values[PLAN_LINES] == NULL && values[PLAN_FRAME] == NULL && values[PLAN_MACHINE] != NULL &&
+	    !key_is_misspelt(root, plan_keys, PLAN_KEYS, PLAN_LINES) && !key_is_misspelt(root, plan_keys, PLAN_KEYS, PLAN_FRAME))
 		diagnose_hint(reader->diagnostics, "a file without lines and frame is a board, not a plan");
 }
 
@@ -90,7 +91,7 @@ static void read_root(struct reader *reader, const struct node *root)
 	const struct node *values[PLAN_KEYS];
 	if (is_other_document(reader, root) || !read_mapping(reader, root, "a plan", plan_keys, PLAN_KEYS, values))
 		return;
-	hint_board(reader, values);
+	hint_board(reader, root, values);
 	if (values[PLAN_VERSION] != NULL)
 		read_version(reader, values[PLAN_VERSION]);
 	if (values[PLAN_NAME] != NULL)

@@ -115,7 +115,7 @@ static void read_field_origin(struct reader *reader, const struct node *node, st
 		return;
 	if (codes->kind == NODE_SCALAR && strcmp(codes->text, "auto") == 0)
 		signal->auto_codes = true;
-	else if (expect_kind(reader, codes, NODE_LIST, "codes (or auto)"))
+	else if (expect_values(reader, codes, "codes (or auto)"))
 		read_code_list(reader, codes, signal);
 }
 

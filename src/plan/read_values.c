@@ -5,8 +5,10 @@
 #include "base/arena.h"
 #include "base/text.h"
 
+#define KEYS_LIMIT 64 // of a kind of mapping
+
 static const char *const kind_words[] = {
-	[NODE_SCALAR] = "a scalar",
+	[NODE_SCALAR] = "a single value",
 	[NODE_LIST] = "a list",
 	[NODE_MAPPING] = "a mapping",
 };
@@ -26,6 +28,17 @@ bool expect_kind(struct reader *reader, const struct node *node, enum node_kind 
 	const bool absent = node->kind == NODE_SCALAR && node->length == 0;
 	diagnose(reader->diagnostics, RULE_NODE_KIND, node->place, "%s: wanted %s, found %s", what, kind_words[kind],
 	         absent ? "nothing" : kind_words[node->kind]);
+	if (kind == NODE_MAPPING)
+		diagnose_hint(reader->diagnostics, "a mapping is { key: value, ... }, or key: value on lines of their own");
+	return false;
+}
+
+bool expect_values(struct reader *reader, const struct node *node, const char *what)
+{
+	if (expect_kind(reader, node, NODE_LIST, what))
+		return true;
+	if (node->kind == NODE_SCALAR && node->length > 0)
+		diagnose_hint(reader->diagnostics, "write [%s]", node->text);
 	return false;
 }
 
@@ -37,16 +50,51 @@ static size_t find_key(const struct key *keys, size_t count, const char *name)
 	return SIZE_MAX;
 }
 
+// Collects the names of the keys that a mapping may have.
+static size_t key_names(const struct key *keys, size_t count, const char *names[KEYS_LIMIT])
+{
+	size_t name_count = 0;
+	for (size_t index = 0; index < count && name_count < KEYS_LIMIT; index++)
+		if (keys[index].need == KEY_OPTIONAL || keys[index].need == KEY_REQUIRED)
+			names[name_count++] = keys[index].name;
+	return name_count;
+}
+
+// The key that stands before a ':' without the space that YAML wants after it ("cells:3"), or NULL.
+static const char *glued_key(const char *text, const char *const *names, size_t count)
+{
+	const char *colon = strchr(text, ':');
+	for (size_t index = 0; colon != NULL && index < count; index++)
+		if (strlen(names[index]) == (size_t)(colon - text) && strncmp(names[index], text, (size_t)(colon - text)) == 0)
+			return names[index];
+	return NULL;
+}
+
 static void report_unknown_key(struct reader *reader, const struct node *key, const char *what, const struct key *keys,
                                size_t count)
 {
-	const char *names[64];
-	size_t name_count = 0;
-	for (size_t index = 0; index < count && name_count < COUNT_OF(names); index++)
-		if (keys[index].need == KEY_OPTIONAL || keys[index].need == KEY_REQUIRED)
-			names[name_count++] = keys[index].name;
+	const char *names[KEYS_LIMIT];
+	const size_t name_count = key_names(keys, count, names);
 	diagnose(reader->diagnostics, RULE_UNKNOWN_KEY, key->place, "%s has no key \"%s\"", what, key->text);
-	hint_words(reader, key->text, names, name_count);
+	if (glued_key(key->text, names, name_count) != NULL)
+		diagnose_hint(reader->diagnostics, "put a space after ':'");
+	else
+		hint_words(reader, key->text, names, name_count);
+}
+
+bool key_is_misspelt(const struct node *mapping, const struct key *keys, size_t count, size_t wanted)
+{
+	const char *names[KEYS_LIMIT];
+	const size_t name_count = key_names(keys, count, names);
+	for (size_t pair = 0; pair < mapping->count; pair++) {
+		const char *text = mapping->pairs[pair].key->text;
+		if (find_key(keys, count, text) != SIZE_MAX)
+			continue;
+		const char *glued = glued_key(text, names, name_count);
+		if ((glued != NULL ? glued : nearest_word(text, names, name_count)) == keys[wanted].name)
+			return true;
+	}
+	return false;
 }
 
 bool read_mapping(struct reader *reader, const struct node *node, const char *what, const struct key *keys, size_t count,
@@ -68,7 +116,7 @@ bool read_mapping(struct reader *reader, const struct node *node, const char *wh
 			values[index] = node->pairs[pair].value;
 	}
 	for (size_t index = 0; index < count; index++)
-		if (keys[index].need == KEY_REQUIRED && values[index] == NULL)
+		if (keys[index].need == KEY_REQUIRED && values[index] == NULL && !key_is_misspelt(node, keys, count, index))
 			diagnose(reader->diagnostics, RULE_MISSING_KEY, node->place, "%s needs the key \"%s\"", what, keys[index].name);
 	return true;
 }
@@ -78,7 +126,7 @@ bool read_scalar(struct reader *reader, const struct node *node, const char *wha
 	if (!expect_kind(reader, node, NODE_SCALAR, what))
 		return false;
 	if (node->length == 0) {
-		diagnose(reader->diagnostics, RULE_NODE_KIND, node->place, "%s: wanted a scalar, found nothing", what);
+		diagnose(reader->diagnostics, RULE_NODE_KIND, node->place, "%s: wanted a single value, found nothing", what);
 		return false;
 	}
 	*result = node->text;
@@ -119,6 +167,26 @@ bool read_truth(struct reader *reader, const struct node *node, const char *what
 	return false;
 }
 
+// Puts "a, b or c".
+static void put_alternatives(struct text *text, const char *const *words, size_t count)
+{
+	for (size_t index = 0; index < count; index++)
+		text_printf(text, "%s%s", index == 0 ? "" : index + 1 == count ? " or " : ", ", words[index]);
+}
+
+static void hint_choices(struct reader *reader, const char *text, const char *const *words, size_t count)
+{
+	const char *near = nearest_word(text, words, count);
+	if (near != NULL) {
+		diagnose_hint(reader->diagnostics, "did you mean \"%s\"?", near);
+		return;
+	}
+	struct text list = {0};
+	put_alternatives(&list, words, count);
+	diagnose_hint(reader->diagnostics, "write %s", text_string(&list));
+	text_release(&list);
+}
+
 bool read_choice(struct reader *reader, const struct node *node, const char *what, const char *const *words, size_t count,
                  size_t *result)
 {
@@ -132,19 +200,32 @@ bool read_choice(struct reader *reader, const struct node *node, const char *wha
 		}
 	}
 	diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "%s: \"%s\" is none of its choices", what, text);
-	hint_words(reader, text, words, count);
+	hint_choices(reader, text, words, count);
 	return false;
 }
 
-static void put_allowed_units(struct text *text, unsigned allowed)
+static void hint_units(struct reader *reader, const char *text, enum quantity_status status, unsigned allowed)
 {
-	bool first = true;
-	for (unsigned dimension = DIMENSION_FREQUENCY; dimension <= DIMENSION_PPM; dimension++) {
-		if ((allowed & (1u << dimension)) == 0)
-			continue;
-		text_printf(text, "%s%s", first ? "" : ", or in ", dimension_units((enum dimension)dimension));
-		first = false;
-	}
+	const char *names[UNITS_LIMIT];
+	size_t count = 0;
+	for (unsigned dimension = DIMENSION_FREQUENCY; dimension <= DIMENSION_PPM; dimension++)
+		if ((allowed & (1u << dimension)) != 0)
+			count += dimension_units((enum dimension)dimension, names + count);
+	const char *meant = status == QUANTITY_UNKNOWN_UNIT ? unit_meant(text, names, count) : NULL;
+	struct text units = {0};
+	put_alternatives(&units, meant != NULL ? &meant : names, meant != NULL ? 1 : count);
+	diagnose_hint(reader->diagnostics, meant != NULL ? "write %s" : "give it in %s", text_string(&units));
+	text_release(&units);
+}
+
+static void hint_quantity(struct reader *reader, const char *text, enum quantity_status status, unsigned allowed)
+{
+	if (status == QUANTITY_OVERFLOW)
+		diagnose_hint(reader->diagnostics, "give it with fewer digits");
+	else if (status == QUANTITY_MALFORMED && strchr(text, ',') != NULL)
+		diagnose_hint(reader->diagnostics, "decimals follow a point, not a comma");
+	else
+		hint_units(reader, text, status, allowed);
 }
 
 bool read_quantity(struct reader *reader, const struct node *node, const char *what, unsigned allowed, struct quantity *result)
@@ -163,10 +244,7 @@ bool read_quantity(struct reader *reader, const struct node *node, const char *w
 		         quantity_status_words(status), text);
 	else
 		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: \"%s\" has a unit that does not fit here", what, text);
-	struct text units = {0};
-	put_allowed_units(&units, allowed);
-	diagnose_hint(reader->diagnostics, "give it in %s", text_string(&units));
-	text_release(&units);
+	hint_quantity(reader, text, status, allowed);
 	return false;
 }
 
@@ -184,12 +262,28 @@ bool read_time(struct reader *reader, const struct node *node, const char *what,
 	return true;
 }
 
+// For "13..15": the same range as the language writes it.
+static void hint_reversed(struct reader *reader, const char *text)
+{
+	unsigned first, last, unused;
+	const char *dots = strstr(text, "..");
+	const size_t length = dots != NULL ? (size_t)(dots - text) : 0;
+	char low[8];
+	if (length == 0 || length >= sizeof low)
+		return;
+	memcpy(low, text, length);
+	low[length] = '\0';
+	if (bit_range_parse(low, &first, &unused) && bit_range_parse(dots + 2, &last, &unused) && strstr(dots + 2, "..") == NULL)
+		diagnose_hint(reader->diagnostics, "the highest bit comes first: %u..%u", last, first);
+}
+
 bool read_bits(struct reader *reader, const struct node *node, const char *text, const char *what, unsigned bits, unsigned *high,
                unsigned *low)
 {
 	unsigned top, bottom;
 	if (!bit_range_parse(text, &top, &bottom)) {
 		diagnose(reader->diagnostics, RULE_BAD_BITS, node->place, "%s: wanted one bit or hi..lo, found \"%s\"", what, text);
+		hint_reversed(reader, text);
 		return false;
 	}
 	if (top >= bits) {

@@ -135,17 +135,46 @@ static void refuses_quantities(void **state)
 	}
 }
 
+static void assert_units(enum dimension dimension, const char *const *wanted, size_t count)
+{
+	const char *names[UNITS_LIMIT];
+	assert_int_equal(dimension_units(dimension, names), count);
+	for (size_t index = 0; index < count; index++)
+		assert_string_equal(names[index], wanted[index]);
+}
+
 static void names_units(void **state)
 {
 	(void)state;
-	assert_string_equal(dimension_units(DIMENSION_FREQUENCY), "Hz, kHz or MHz");
-	assert_string_equal(dimension_units(DIMENSION_TIME), "s, ms, us or ns");
-	assert_string_equal(dimension_units(DIMENSION_TICKS), "ticks");
-	assert_string_equal(dimension_units(DIMENSION_DOTS), "dots");
-	assert_string_equal(dimension_units(DIMENSION_CELLS), "cells");
-	assert_string_equal(dimension_units(DIMENSION_LINES), "lines");
-	assert_string_equal(dimension_units(DIMENSION_BITS), "bits");
-	assert_string_equal(dimension_units(DIMENSION_PPM), "ppm");
+	assert_units(DIMENSION_FREQUENCY, (const char *const[]){"Hz", "kHz", "MHz"}, 3);
+	assert_units(DIMENSION_TIME, (const char *const[]){"s", "ms", "us", "ns"}, 4);
+	assert_units(DIMENSION_TICKS, (const char *const[]){"ticks"}, 1);
+	assert_units(DIMENSION_DOTS, (const char *const[]){"dots"}, 1);
+	assert_units(DIMENSION_CELLS, (const char *const[]){"cells"}, 1);
+	assert_units(DIMENSION_LINES, (const char *const[]){"lines"}, 1);
+	assert_units(DIMENSION_BITS, (const char *const[]){"bits"}, 1);
+	assert_units(DIMENSION_PPM, (const char *const[]){"ppm"}, 1);
+}
+
+static void knows_what_unit_is_meant(void **state)
+{
+	(void)state;
+	static const char *const times[] = {"s", "ms", "us", "ns"};
+	static const char *const frequencies[] = {"Hz", "kHz", "MHz"};
+	assert_string_equal(unit_meant("4.7 \xC2\xB5s", times, 4), "us");
+	assert_string_equal(unit_meant("4.7\xCE\xBCs", times, 4), "us");
+	assert_string_equal(unit_meant("4.7 US", times, 4), "us");
+	assert_string_equal(unit_meant("315/22 MHZ", frequencies, 3), "MHz");
+	assert_string_equal(unit_meant("1 khz", frequencies, 3), "kHz");
+	assert_null(unit_meant("4.7 usec", times, 4));
+	assert_null(unit_meant("4.7 m", times, 4));
+	assert_null(unit_meant("4.7", times, 4));
+	assert_null(unit_meant("4.7 \xC2\xB5s", frequencies, 3));
+}
+
+static void names_statuses(void **state)
+{
+	(void)state;
 	assert_string_equal(quantity_status_words(QUANTITY_NO_UNIT), "a number needs a unit");
 	assert_string_equal(quantity_status_words(QUANTITY_UNKNOWN_UNIT), "there is no such unit");
 }
@@ -238,6 +267,8 @@ int main(void)
 		cmocka_unit_test(reads_quantities),
 		cmocka_unit_test(refuses_quantities),
 		cmocka_unit_test(names_units),
+		cmocka_unit_test(knows_what_unit_is_meant),
+		cmocka_unit_test(names_statuses),
 		cmocka_unit_test(reads_whole_numbers),
 		cmocka_unit_test(reads_bit_ranges),
 		cmocka_unit_test(reads_truth_values),
