@@ -1,8 +1,9 @@
 // Glitches: cell edges at which the code of a decoded field changes in more than one bit, so that the decoder may see a
-// code in between and flicker.
+// code in between and flicker; and what is taken straight from the EEPROM, and is unsettled after each edge.
 #include <string.h>
 
 #include "base/arena.h"
+#include "catalogue/catalogue.h"
 #include "proof/trial.h"
 
 #define MEMO_SIZE 4096u
@@ -157,16 +158,47 @@ static bool search_all(struct trial *trial)
 	return true;
 }
 
-static void measure_direct(const struct trial *trial, struct glitch_result *result)
+// How long what a chip answers is unsettled after an edge.
+static struct fraction unsettled(const struct trial *trial, const struct chip *chip)
 {
 	const struct timing *timing = &trial->timeline->plan->timing;
+	const struct fraction delay_s = trial->wiring.advance == ADVANCE_COUNT ? timing->counter_delay_s : timing->latch_delay_s;
+	// Nanoseconds of data sheets: far from 64 bits. Should they not fit, the access time alone stands.
+	struct fraction sum_s = chip->access_s;
+	fraction_add(delay_s, chip->access_s, &sum_s);
+	return sum_s;
+}
+
+static void measure_direct(const struct trial *trial, struct glitch_result *result)
+{
 	const struct chip *chip = &trial->wiring.chips[slowest_chip(&trial->wiring)];
 	result->direct = true;
 	result->unsettled_part = chip->label;
-	struct fraction delay_s = trial->wiring.advance == ADVANCE_COUNT ? timing->counter_delay_s : timing->latch_delay_s;
-	// Nanoseconds of data sheets: far from 64 bits. Should they not fit, the access time alone stands.
-	result->unsettled_s = chip->access_s;
-	fraction_add(delay_s, chip->access_s, &result->unsettled_s);
+	result->unsettled_s = unsettled(trial, chip);
+}
+
+static bool carries_clear(const struct chip *chip)
+{
+	for (unsigned pin = 0; pin < chip->part->data_pins; pin++)
+		if (chip->data[pin].kind == DATA_CLEAR)
+			return true;
+	return false;
+}
+
+// Clear is never latched. An asynchronous pin obeys it while the address settles; a synchronous one looks only at the edge.
+static void measure_clear(const struct trial *trial, struct glitch_result *result)
+{
+	const struct chip *slowest = NULL;
+	for (size_t index = 0; index < trial->wiring.chip_count; index++) {
+		const struct chip *chip = &trial->wiring.chips[index];
+		if (carries_clear(chip) && (slowest == NULL || fraction_compare(chip->access_s, slowest->access_s) > 0))
+			slowest = chip;
+	}
+	if (slowest == NULL)
+		return;
+	result->async_clear = true;
+	result->clear_part = slowest->label;
+	result->clear_unsettled_s = unsettled(trial, slowest);
 }
 
 bool prove_glitches(struct trial *trial)
@@ -175,7 +207,9 @@ bool prove_glitches(struct trial *trial)
 	result->has_field_signals = trial->decoders->count > 0;
 	if (trial->wiring.outputs == OUTPUTS_DIRECT)
 		measure_direct(trial, result);
-	if (!result->has_field_signals && !result->direct)
+	if (trial->wiring.advance == ADVANCE_COUNT && trial->wiring.clear == CLEAR_ASYNC)
+		measure_clear(trial, result);
+	if (!result->has_field_signals && !result->direct && !result->async_clear)
 		trial->proofs->proof[PROOF_GLITCHES].verdict = VERDICT_ABSENT;
 	return !result->has_field_signals || search_all(trial);
 }

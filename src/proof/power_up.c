@@ -19,6 +19,17 @@ static void note_longest(struct trial *trial, struct power_up_result *result)
 	fraction_make((int64_t)result->longest_cells * timeline->line_count, timeline->cell_count, &result->longest_lines);
 }
 
+// The states that a counter with an async clear passes through in no time.
+static uint64_t count_cleared(const struct trial *trial)
+{
+	const uint32_t states = (uint32_t)1 << trial->wiring.state_bits;
+	uint64_t count = 0;
+	if (trial->wiring.advance == ADVANCE_COUNT && trial->wiring.clear == CLEAR_ASYNC)
+		for (uint32_t state = 0; state < states; state++)
+			count += machine_settle(trial->machine, state) != state;
+	return count;
+}
+
 static bool loop_fails(struct trial *trial)
 {
 	const struct ways *ways = trial->ways;
@@ -41,6 +52,7 @@ bool prove_power_up(struct trial *trial)
 	if (trial->ways == NULL)
 		return false;
 	result->states += (uint64_t)1 << trial->wiring.state_bits;
+	result->cleared_states += count_cleared(trial);
 	if (trial->lap.return_cells > result->frame_states)
 		result->frame_states = trial->lap.return_cells;
 	note_longest(trial, result);

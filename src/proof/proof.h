@@ -75,6 +75,7 @@ struct colour_result {
 struct power_up_result {
 	uint64_t states;           // examined, over all banks
 	uint32_t frame_states;     // in one bank
+	uint64_t cleared_states;   // with async clear, over all banks: fall to 0 at once and are never a cell
 	uint32_t longest_cells;    // the longest way to a state of the frame
 	struct fraction longest_lines; // cells / mean cells of a line
 	uint32_t longest_state;
@@ -115,6 +116,9 @@ struct glitch_result {
 	bool direct;               // data outputs are direct
 	struct fraction unsettled_s; // for direct outputs: latch or counter delay + access time
 	const char *unsettled_part;  // label of the slowest chip
+	bool async_clear;            // clear goes from the EEPROM straight into an asynchronous pin
+	struct fraction clear_unsettled_s; // then: counter delay + access time
+	const char *clear_part;      // label of the slowest chip that carries clear
 };
 
 struct speed_result {

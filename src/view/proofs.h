@@ -40,14 +40,16 @@ void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind k
 //   "colour":   { "uniform": all lines have the same number of cycles, fractions cycles_per_line (of the first line) and
 //                 cycles_per_frame, "repeats_lines", "repeats_frames" (fractions and repeats left out if they do not fit 64
 //                 bits), "asked": "free", "every line", "every 2 frames", … }
-//   "power-up": { "states" (in all banks), "frame_states" (in one), "longest_cells", fraction longest_lines, "longest_state",
+//   "power-up": { "states" (in all banks), "frame_states" (in one), "cleared_states" (in all banks: fall to 0 at once, by an
+//                 async clear), "longest_cells", fraction longest_lines, "longest_state",
 //                 "longest_bank", "lost_states", and if some are lost "second_loop": { "state", "cells" } }
 //   "upset":    { "upsets", "worst_cells", "worst": { PLACE, "bit" }, fraction mean_cells, "worst_slip_cells", fraction
 //                 worst_slip_lines, "worst_slip": { PLACE, "bit" }, fraction mean_slip_cells }
 //   "glitches": { "decoded": signals are decoded from the state, "edges", "multi_bit_edges", "disturbed": [ { "signal",
 //                 "edges", PLACE of the cell that the first of them begins, "from_state", "to_state", "from_code",
 //                 "between_code", "to_code" } ], "direct": data outputs are direct, and if so time unsettled (_s, _ns) and
-//                 "unsettled_chip": its label }
+//                 "unsettled_chip": its label, "async_clear": clear goes straight into an asynchronous pin, and if so time
+//                 clear_unsettled (_s, _ns) and "clear_chip": its label }
 //   "speed":    { times cell, available, delay, access, setup, margin, needed, slack (_s, _ns), "second_pass": delay and
 //                 access count twice, "slowest_chip": its label }
 //   "sweep":    { "sweeps": [ { "bits": as the plan has them, "kept": true or false, "values", "missing", and if some are

@@ -149,10 +149,6 @@ static void put_colour(struct text *out, const struct proofs *proofs)
 static void put_longest_way(struct text *out, const struct proofs *proofs)
 {
 	const struct power_up_result *power_up = &proofs->power_up;
-	if (power_up->longest_cells == 0) {
-		text_put(out, ": all are states of the frame");
-		return;
-	}
 	text_put(out, ", the longest way ");
 	text_put_count(out, power_up->longest_cells, "cell", "cells");
 	text_put(out, " (");
@@ -160,6 +156,17 @@ static void put_longest_way(struct text *out, const struct proofs *proofs)
 	text_put(out, ") from ");
 	put_state(out, proofs, power_up->longest_state);
 	put_bank(out, proofs, power_up->longest_bank);
+}
+
+// Where no state has a way home to go, because it is one of the frame or clears the counter at once.
+static void put_at_home(struct text *out, const struct power_up_result *power_up)
+{
+	const uint64_t at_home = power_up->states - power_up->cleared_states;
+	if (power_up->cleared_states == 0)
+		text_put(out, ": all are states of the frame");
+	else
+		text_printf(out, ": %" PRIu64 " %s of the frame, %" PRIu64 " at once, by clearing the counter", at_home,
+		            at_home == 1 ? "is a state" : "are states", power_up->cleared_states);
 }
 
 static void put_power_up(struct text *out, const struct proofs *proofs)
@@ -176,7 +183,10 @@ static void put_power_up(struct text *out, const struct proofs *proofs)
 	text_put_count(out, power_up->states, "state", "states");
 	put_banks(out, proofs, "in");
 	text_put(out, " come home");
-	put_longest_way(out, proofs);
+	if (power_up->longest_cells == 0)
+		put_at_home(out, power_up);
+	else
+		put_longest_way(out, proofs);
 }
 
 // " at worst (bit 3 in line 0, cell 5)".
@@ -240,17 +250,30 @@ static void put_decoded(struct text *out, const struct glitch_result *glitches)
 		text_put_count(out, glitches->disturbed, "decoded signal may flicker", "decoded signals may flicker");
 }
 
+static void put_unsettled(struct text *out, struct fraction seconds)
+{
+	text_put(out, "unsettled for ");
+	text_put_time_in(out, seconds, UNIT_NANOSECONDS);
+	text_put(out, " after each edge");
+}
+
+// "The data outputs are latched" is said only where nothing else is to be said: it must not outshine an unsettled clear.
 static void put_glitches(struct text *out, const struct proofs *proofs)
 {
 	const struct glitch_result *glitches = &proofs->glitches;
 	put_decoded(out, glitches);
-	if (!glitches->direct) {
-		text_put(out, glitches->has_field_signals ? "" : ", and the data outputs are latched");
-		return;
+	if (glitches->direct) {
+		text_put(out, "; the data outputs are taken straight from the EEPROMs and are ");
+		put_unsettled(out, glitches->unsettled_s);
+		text_printf(out, " (%s)", glitches->unsettled_part);
 	}
-	text_put(out, "; direct outputs are unsettled for ");
-	text_put_time_in(out, glitches->unsettled_s, UNIT_NANOSECONDS);
-	text_printf(out, " after each edge (%s)", glitches->unsettled_part);
+	if (glitches->async_clear) {
+		text_printf(out, "; clear is taken straight from %s into an asynchronous pin and is ", glitches->clear_part);
+		put_unsettled(out, glitches->clear_unsettled_s);
+		text_put(out, ", when a spike on it clears the counter too early: gate it, or use clear: sync");
+	}
+	if (!glitches->direct && !glitches->async_clear && !glitches->has_field_signals)
+		text_put(out, ", and the data outputs are latched");
 }
 
 // " of the shortest cell's 628.571 ns", " of 314.286 ns (1/2 of the shortest cell)".

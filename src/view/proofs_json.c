@@ -114,6 +114,7 @@ static void put_power_up(json_t **object, const struct proofs *proofs)
 	const struct power_up_result *power_up = &proofs->power_up;
 	json_put(object, "states", count(power_up->states));
 	json_put(object, "frame_states", count(power_up->frame_states));
+	json_put(object, "cleared_states", count(power_up->cleared_states));
 	json_put(object, "longest_cells", count(power_up->longest_cells));
 	json_put_fraction(object, "longest_lines", power_up->longest_lines);
 	json_put(object, "longest_state", count(power_up->longest_state));
@@ -173,10 +174,15 @@ static void put_glitches(json_t **object, const struct proofs *proofs)
 	json_put(object, "multi_bit_edges", count(glitches->multi_bit_edges));
 	json_put(object, "disturbed", disturbed);
 	json_put(object, "direct", truth(glitches->direct));
-	if (!glitches->direct)
-		return;
-	json_put_time(object, "unsettled", glitches->unsettled_s, UNIT_NANOSECONDS);
-	json_put(object, "unsettled_chip", json_string(glitches->unsettled_part));
+	if (glitches->direct) {
+		json_put_time(object, "unsettled", glitches->unsettled_s, UNIT_NANOSECONDS);
+		json_put(object, "unsettled_chip", json_string(glitches->unsettled_part));
+	}
+	json_put(object, "async_clear", truth(glitches->async_clear));
+	if (glitches->async_clear) {
+		json_put_time(object, "clear_unsettled", glitches->clear_unsettled_s, UNIT_NANOSECONDS);
+		json_put(object, "clear_chip", json_string(glitches->clear_part));
+	}
 }
 
 static void put_speed(json_t **object, const struct proofs *proofs)

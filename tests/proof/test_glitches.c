@@ -368,6 +368,34 @@ static void direct_outputs_settle(void **test)
 	by_hand_destroy(hand);
 }
 
+// An async clear is taken from U8: 51 ns of the counter and 150 ns of the chip. U7 is slower, but carries no clear.
+static void async_clear_settles(void **test)
+{
+	(void)test;
+	struct by_hand *hand = small_board();
+	hand->plan.machine.advance = ADVANCE_COUNT;
+	hand->plan.machine.clear = CLEAR_ASYNC;
+	hand->plan.timing.counter_delay_s = ratio(51, 1000000000);
+	struct chip *first = add_chip(hand, "U7"), *second = add_chip(hand, "U8");
+	first->access_s = ratio(250, 1000000000);
+	second->access_s = ratio(150, 1000000000);
+	first->data[0] = (struct data_wire){DATA_SIGNAL, 0};
+	first->data[1] = (struct data_wire){DATA_SIGNAL, 1};
+	second->data[0] = (struct data_wire){DATA_CLEAR, 0};
+	for (uint32_t state = 0; state < 8; state++)
+		burn_count(hand, state, state > 4, small_pins[(state + 1) % 5]);
+	struct proofs *proofs = prove(hand, 0);
+	assert_verdict(proofs, PROOF_SIGNALS, VERDICT_PASS);
+	assert_verdict(proofs, PROOF_GLITCHES, VERDICT_PASS);
+	assert_false(proofs->glitches.direct);
+	assert_true(proofs->glitches.async_clear);
+	assert_ratio(proofs->glitches.clear_unsettled_s, 201, 1000000000);
+	assert_string_equal(proofs->glitches.clear_part, "U8");
+	assert_int_equal(proofs->power_up.cleared_states, 3);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
@@ -383,6 +411,7 @@ int main(void)
 		cmocka_unit_test(edges_alike),
 		cmocka_unit_test(nothing_to_disturb),
 		cmocka_unit_test(direct_outputs_settle),
+		cmocka_unit_test(async_clear_settles),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }

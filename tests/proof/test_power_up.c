@@ -111,6 +111,7 @@ static void passing_states_settle_first(void **test)
 	assert_verdict(proofs, PROOF_POWER_UP, VERDICT_PASS);
 	assert_int_equal(proofs->power_up.states, 8);
 	assert_int_equal(proofs->power_up.frame_states, 5);
+	assert_int_equal(proofs->power_up.cleared_states, 2);
 	assert_int_equal(proofs->power_up.longest_cells, 1);
 	assert_int_equal(proofs->power_up.longest_state, 6);
 	proofs_destroy(proofs);

@@ -66,7 +66,7 @@ static void the_figures_of_a_good_plan(void **state)
 		"'cycles_per_frame':'59736','cycles_per_frame_rounded':59736.0,'repeats_lines':1,'repeats_frames':1,"
 		"'asked':'every line'}");
 	assert_proof(&harbour, PROOF_POWER_UP,
-		"{'verdict':'pass','must':true,'states':65536,'frame_states':26462,'longest_cells':1,"
+		"{'verdict':'pass','must':true,'states':65536,'frame_states':26462,'cleared_states':0,'longest_cells':1,"
 		"'longest_lines':'1/101','longest_lines_rounded':0.009901,'longest_state':0,'longest_bank':0,'lost_states':0}");
 	assert_proof(&harbour, PROOF_UPSET,
 		"{'verdict':'pass','must':false,'upsets':423392,'worst_cells':101,'worst':{'line':2,'line_type':'border',"
@@ -75,7 +75,7 @@ static void the_figures_of_a_good_plan(void **state)
 		"'line_type':'border','cell':6,'region':'sync','frame_cell':107,'bit':3},'mean_slip_cells':'1/3',"
 		"'mean_slip_cells_rounded':0.333333}");
 	assert_proof(&harbour, PROOF_GLITCHES,
-		"{'verdict':'pass','must':false,'decoded':true,'edges':26462,'multi_bit_edges':0,'disturbed':[],'direct':false}");
+		"{'verdict':'pass','must':false,'decoded':true,'edges':26462,'multi_bit_edges':0,'disturbed':[],'direct':false,'async_clear':false}");
 	assert_proof(&harbour, PROOF_SPEED,
 		"{'verdict':'pass','must':false,'cell_s':'11/17500000','cell_ns':628.571429,'available_s':'11/17500000',"
 		"'available_ns':628.571429,'delay_s':'41/1000000000','delay_ns':41.0,'access_s':'3/20000000','access_ns':150.0,"
@@ -144,7 +144,7 @@ static void a_second_loop_has_no_place_in_the_frame(void **state)
 	harbour_fails(&harbour, PROOF_POWER_UP, (struct counterexample){.present = true, .state = 18, .signal = SIZE_MAX,
 		.what = "17 states are lost"});
 	assert_proof(&harbour, PROOF_POWER_UP,
-		"{'verdict':'fail','must':true,'states':65536,'frame_states':26462,'longest_cells':1,"
+		"{'verdict':'fail','must':true,'states':65536,'frame_states':26462,'cleared_states':0,'longest_cells':1,"
 		"'longest_lines':'1/101','longest_lines_rounded':0.009901,'longest_state':0,'longest_bank':0,'lost_states':17,"
 		"'second_loop':{'state':18,'cells':3},'counterexample':{'what':'17 states are lost','bank':0,'state':18}}");
 }
@@ -161,7 +161,7 @@ static void disturbed_signals_are_listed(void **state)
 	assert_proof(&harbour, PROOF_GLITCHES,
 		"{'verdict':'fail','must':false,'decoded':true,'edges':26462,'multi_bit_edges':432,'disturbed':[{'signal':'load',"
 		"'edges':216,'line':18,'line_type':'picture','cell':21,'region':'picture','frame_cell':1839,'from_state':41251,"
-		"'to_state':17494,'from_code':5,'between_code':7,'to_code':2}],'direct':false}");
+		"'to_state':17494,'from_code':5,'between_code':7,'to_code':2}],'direct':false,'async_clear':false}");
 }
 
 static void direct_outputs_are_unsettled(void **state)
@@ -173,7 +173,11 @@ static void direct_outputs_are_unsettled(void **state)
 	*glitches = (struct glitch_result){.direct = true, .unsettled_s = {191, 1000000000}, .unsettled_part = "rom1"};
 	assert_proof(&harbour, PROOF_GLITCHES,
 		"{'verdict':'pass','must':false,'decoded':false,'edges':0,'multi_bit_edges':0,'disturbed':[],'direct':true,"
-		"'unsettled_s':'191/1000000000','unsettled_ns':191.0,'unsettled_chip':'rom1'}");
+		"'unsettled_s':'191/1000000000','unsettled_ns':191.0,'unsettled_chip':'rom1','async_clear':false}");
+	*glitches = (struct glitch_result){.async_clear = true, .clear_unsettled_s = {201, 1000000000}, .clear_part = "rom0"};
+	assert_proof(&harbour, PROOF_GLITCHES,
+		"{'verdict':'pass','must':false,'decoded':false,'edges':0,'multi_bit_edges':0,'disturbed':[],'direct':false,"
+		"'async_clear':true,'clear_unsettled_s':'201/1000000000','clear_unsettled_ns':201.0,'clear_chip':'rom0'}");
 }
 
 static void each_sweep_has_its_own_figures(void **state)

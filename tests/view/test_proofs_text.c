@@ -297,6 +297,21 @@ static void long_ways_home_count_lines(void **state)
 		"pass  power-up  all 65536 states come home, the longest way 101 cells (1 line) from state 0xFFFF\n");
 }
 
+static void cleared_states_are_not_of_the_frame(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	struct power_up_result *power_up = &harbour.proofs.power_up;
+	power_up->longest_cells = 0;
+	power_up->cleared_states = 39074; // 65536 - 26462
+	assert_proof(&harbour, PROOF_POWER_UP,
+		"pass  power-up  all 65536 states come home: 26462 are states of the frame, 39074 at once, by\n"
+		"                clearing the counter\n");
+	power_up->cleared_states = 0;
+	assert_proof(&harbour, PROOF_POWER_UP, "pass  power-up  all 65536 states come home: all are states of the frame\n");
+}
+
 // Cell 1823 is cell 5 of line 18, the first of type "picture".
 static void an_upset_that_never_comes_home_is_shown(void **state)
 {
@@ -353,8 +368,16 @@ static void direct_outputs_are_unsettled(void **state)
 	glitches->unsettled_s = (struct fraction){191, 1000000000};
 	glitches->unsettled_part = "rom1";
 	assert_proof(&harbour, PROOF_GLITCHES,
-		"pass  glitches  no signal is decoded from the state; direct outputs are unsettled for 191 ns after\n"
-		"                each edge (rom1)\n");
+		"pass  glitches  no signal is decoded from the state; the data outputs are taken straight from the\n"
+		"                EEPROMs and are unsettled for 191 ns after each edge (rom1)\n");
+	glitches->direct = false;
+	glitches->async_clear = true;
+	glitches->clear_unsettled_s = (struct fraction){201, 1000000000};
+	glitches->clear_part = "rom0";
+	assert_proof(&harbour, PROOF_GLITCHES,
+		"pass  glitches  no signal is decoded from the state; clear is taken straight from rom0 into an\n"
+		"                asynchronous pin and is unsettled for 201 ns after each edge, when a spike on it\n"
+		"                clears the counter too early: gate it, or use clear: sync\n");
 }
 
 // Half of the cell is 314.286 ns. Twice 41 + 150, and 15 + 20, are 417 ns: 102.714 ns too much.
@@ -466,6 +489,7 @@ int main(void)
 		cmocka_unit_test(colour_names_what_is_asked),
 		cmocka_unit_test(a_second_loop_is_shown),
 		cmocka_unit_test(long_ways_home_count_lines),
+		cmocka_unit_test(cleared_states_are_not_of_the_frame),
 		cmocka_unit_test(an_upset_that_never_comes_home_is_shown),
 		cmocka_unit_test(disturbed_signals_show_their_first_edge),
 		cmocka_unit_test(direct_outputs_are_unsettled),
