@@ -85,9 +85,16 @@ void read_chips(struct reader *reader, const struct node *node);
 void read_timing(struct reader *reader, const struct node *node);
 void read_sweeps(struct reader *reader, const struct node *node);
 
-// The wires of a chip in the long form, and whether every bit of the word and the banks is wired.
+// The word's bits in their order: next.0 … or clear, then the data signals. Puts them into word[LIMIT_STATE_BITS + LIMIT_SIGNALS] and
+// returns how many there are. Cannot fail.
+size_t word_of(const struct plan *plan, struct data_wire *word);
+
+// The wires of a chip in the long form.
 void read_address_wires(struct reader *reader, const struct node *node, struct chip *chip);
 void read_data_wires(struct reader *reader, const struct node *node, struct chip *chip);
+// Whether a bit of the word is on two pins; with `all_known`, every chip could be read, and what is on none is told too.
+void check_data_doubled(struct reader *reader, const struct node *chips, bool all_known);
+// Whether every bit of the word and the banks is wired. Every chip must have been read without errors.
 void check_word_wired(struct reader *reader, const struct node *chips);
 
 // Looks up names. SIZE_MAX if there is none.

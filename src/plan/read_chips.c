@@ -178,8 +178,7 @@ static void wire_straight_address(const struct plan *plan, struct chip *chip)
 		chip->address[pin] = (struct address_wire){ADDRESS_STATE, pin};
 }
 
-// The word's bits in their order: next.0 … or clear, then the data signals.
-static size_t word_of(const struct plan *plan, struct data_wire *word)
+size_t word_of(const struct plan *plan, struct data_wire *word)
 {
 	size_t count = 0;
 	if (plan->machine.advance == ADVANCE_COUNT)
@@ -279,7 +278,10 @@ static void read_long_chips(struct reader *reader, const struct node *node)
 		plan->chip_count = index + 1;
 		read_chip(reader, node->items[index], index);
 	}
-	if (diagnostics_error_count(reader->diagnostics) == errors_before && reader->machine_known && reader->signals_known)
+	if (!reader->machine_known || !reader->signals_known)
+		return;
+	check_data_doubled(reader, node, diagnostics_error_count(reader->diagnostics) == errors_before);
+	if (diagnostics_error_count(reader->diagnostics) == errors_before)
 		check_word_wired(reader, node);
 }
 
