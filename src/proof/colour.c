@@ -40,23 +40,29 @@ static int64_t add_modulo(int64_t left, int64_t right, int64_t modulus)
 	return left >= modulus - right ? left - (modulus - right) : left + right;
 }
 
-// The first line from which `count` lines are no whole number of cycles; UINT32_MAX if there is none.
-static uint32_t first_broken_window(const struct phases *phases, int64_t count)
+// Of the runs of so many lines, those that are no whole number of cycles.
+struct broken_runs {
+	uint32_t first_line;
+	uint32_t count;
+};
+
+static struct broken_runs find_broken(const struct phases *phases, int64_t count)
 {
 	const uint32_t lines = phases->trial->timeline->line_count;
 	const int64_t modulus = phases->modulus;
+	struct broken_runs broken = {0};
 	int64_t rest = multiply_modulo(count / lines % modulus, phases->frame_rest, modulus);
 	uint32_t end = (uint32_t)(count % lines);
 	for (uint32_t line = 0; line < end; line++)
 		rest = add_modulo(rest, line_rest(phases, line), modulus);
 	for (uint32_t line = 0; line < lines; line++) {
-		if (rest != 0)
-			return line;
+		if (rest != 0 && broken.count++ == 0)
+			broken.first_line = line;
 		rest = add_modulo(rest, modulus - line_rest(phases, line), modulus);
 		rest = add_modulo(rest, line_rest(phases, end), modulus);
 		end = end + 1 == lines ? 0 : end + 1;
 	}
-	return UINT32_MAX;
+	return broken;
 }
 
 // The smallest shift that maps the rests of the lines onto themselves, around the frame: the classic failure function of a
@@ -120,49 +126,133 @@ static int64_t window_ticks(const struct phases *phases, uint32_t first, int64_t
 	return ticks;
 }
 
-static const char *phase_words(const struct phases *phases, uint32_t first, int64_t count, bool frames, int64_t ticks)
+// What is demanded and not met.
+struct broken_phase {
+	bool frames;
+	int64_t count;             // of lines or frames
+	struct broken_runs runs;   // of lines
+	int64_t ticks;             // -1 if they do not fit
+};
+
+// "line 3 takes", "2 lines from line 3 on take", "1 frame takes".
+static void put_run(struct text *text, const struct broken_phase *broken)
 {
-	struct fraction cycles;
-	struct arena *arena = phases->trial->proofs->arena;
-	const char *unit = frames ? count == 1 ? "frame" : "frames" : count == 1 ? "line" : "lines";
-	if (ticks < 0 || !cycles_of(phases, ticks, &cycles))
-		return arena_format(arena, "%" PRId64 " %s from line %" PRIu32 " on are no whole number of subcarrier cycles",
-		                    count, unit, first);
-	struct text text = {0};
-	text_printf(&text, "%" PRId64 " %s from line %" PRIu32 " on take %" PRId64 " ticks, which are ", count, unit, first,
-	            ticks);
-	text_put_fraction(&text, cycles);
-	text_put(&text, " subcarrier cycles, expected a whole number");
-	const char *words = text.failed ? NULL : arena_copy(arena, text_string(&text), text.length);
-	text_release(&text);
+	if (!broken->frames && broken->count == 1)
+		text_printf(text, "line %" PRIu32 " takes ", broken->runs.first_line);
+	else if (!broken->frames)
+		text_printf(text, "%" PRId64 " lines from line %" PRIu32 " on take ", broken->count, broken->runs.first_line);
+	else
+		text_printf(text, "%" PRId64 " frame%s ", broken->count, broken->count == 1 ? " takes" : "s take");
+}
+
+static void put_others(struct text *text, const struct broken_phase *broken, uint32_t lines)
+{
+	if (broken->frames || lines == 1)
+		return;
+	if (broken->runs.count == 1)
+		text_put(text, broken->count == 1 ? "; all other lines are whole" : "; all other such runs are whole");
+	else
+		text_printf(text, "; %" PRIu32 " of %" PRIu32 " %s are not whole", broken->runs.count, lines,
+		            broken->count == 1 ? "lines" : "such runs");
+}
+
+// A copy in the proofs' arena; NULL when memory is out. Releases the text.
+static const char *take_words(const struct phases *phases, struct text *text)
+{
+	const char *words = text->failed ? NULL : arena_copy(phases->trial->proofs->arena, text_string(text), text->length);
+	text_release(text);
 	return words;
 }
 
-static bool phase_fails(struct trial *trial, const struct phases *phases, uint32_t line, bool frames)
+static const char *phase_words(const struct phases *phases, const struct broken_phase *broken)
 {
-	int64_t count = trial->timeline->plan->clock.phase_count, ticks = -1;
-	if (!frames)
-		ticks = window_ticks(phases, line, count);
-	else if (!multiply_checked(count, trial->lap.ticks, &ticks))
-		ticks = -1;
-	uint32_t cell = trial->timeline->lines[line].first_cell;
+	struct fraction cycles;
+	struct text text = {0};
+	put_run(&text, broken);
+	if (broken->ticks < 0 || !cycles_of(phases, broken->ticks, &cycles)) {
+		text_put(&text, "no whole number of subcarrier cycles");
+	} else {
+		text_printf(&text, "%" PRId64 " ticks, ", broken->ticks);
+		text_put_fraction(&text, cycles);
+		text_put(&text, " cycles, expected a whole number");
+	}
+	put_others(&text, broken, phases->trial->timeline->line_count);
+	return take_words(phases, &text);
+}
+
+// A line must be a multiple of so many ticks for the demand to be met, if all lines are alike; 0 if that is not known.
+static int64_t closing_step(const struct phases *phases, const struct broken_phase *broken, bool uniform)
+{
+	int64_t lines = broken->count;
+	if (broken->frames && !multiply_checked(lines, phases->trial->timeline->line_count, &lines))
+		return 0;
+	const bool each_for_itself = !broken->frames && broken->count == 1;
+	return uniform || each_for_itself ? phases->modulus / greatest_common_divisor(phases->modulus, lines) : 0;
+}
+
+static void put_lengths(struct text *text, int64_t ticks, int64_t step)
+{
+	const int64_t below = ticks / step * step, above = below > INT64_MAX - step ? 0 : below + step;
+	text_put(text, "lines of ");
+	if (below > 0)
+		text_printf(text, "%" PRId64, below);
+	if (above > 0)
+		text_printf(text, "%s%" PRId64, below > 0 ? " or " : "", above);
+	text_put(text, " ticks would meet it");
+}
+
+// How the plan could be mended; *hint is NULL where the machine, and not the plan, is at fault. False when memory is out.
+static bool phase_hint(const struct phases *phases, const struct broken_phase *broken, const struct colour_result *result,
+                       const char **hint)
+{
+	const struct timeline *timeline = phases->trial->timeline;
+	const uint32_t line = broken->runs.first_line;
+	const int64_t ticks = phases->trial->lap.line_ticks[line], step = closing_step(phases, broken, result->uniform);
+	struct text text = {0};
+	*hint = NULL;
+	if (ticks != timeline->types[timeline->lines[line].type].ticks)
+		return true;
+	if (step > 0)
+		put_lengths(&text, ticks, step);
+	if (result->repeats_known && result->repeats_lines <= timeline->line_count)
+		text_printf(&text, "%s \"every %" PRId64 " lines\"", text.length > 0 ? "; as they are, they meet" : "the lines meet",
+		            result->repeats_lines);
+	if (text.length > 0 || text.failed) {
+		*hint = take_words(phases, &text);
+		return *hint != NULL;
+	}
+	return true;
+}
+
+static bool phase_fails(const struct phases *phases, struct trial *trial, const struct broken_phase *broken,
+                        const struct colour_result *result)
+{
+	const uint32_t cell = trial->timeline->lines[broken->runs.first_line].first_cell;
 	struct counterexample found = {.present = true, .bank = trial->bank, .cell = cell,
 	                               .state = trial->lap.states != NULL ? trial->lap.states[cell] : NO_STATE,
 	                               .signal = SIZE_MAX};
-	found.what = phase_words(phases, line, count, frames, ticks);
-	return proof_fails(trial, PROOF_COLOUR, found);
+	found.what = phase_words(phases, broken);
+	return phase_hint(phases, broken, result, &found.hint) && proof_fails(trial, PROOF_COLOUR, found);
 }
 
-static bool demand_phase(struct trial *trial, const struct phases *phases)
+static bool demand_phase(struct trial *trial, const struct phases *phases, const struct colour_result *result)
 {
 	const struct clock *clock = &trial->timeline->plan->clock;
-	if (clock->phase == PHASE_FRAMES &&
-	    multiply_modulo(clock->phase_count % phases->modulus, phases->frame_rest, phases->modulus) != 0)
-		return phase_fails(trial, phases, 0, true);
-	if (clock->phase != PHASE_LINES)
+	struct broken_phase broken = {.frames = clock->phase == PHASE_FRAMES, .count = clock->phase_count};
+	if (clock->phase == PHASE_FREE)
 		return true;
-	uint32_t broken = first_broken_window(phases, clock->phase_count);
-	return broken == UINT32_MAX || phase_fails(trial, phases, broken, false);
+	if (broken.frames) {
+		if (multiply_modulo(clock->phase_count % phases->modulus, phases->frame_rest, phases->modulus) == 0)
+			return true;
+		if (!multiply_checked(broken.count, trial->lap.ticks, &broken.ticks))
+			broken.ticks = -1;
+	} else {
+		broken.runs = find_broken(phases, clock->phase_count);
+		if (broken.runs.count == 0)
+			return true;
+		broken.ticks = window_ticks(phases, broken.runs.first_line, broken.count);
+	}
+	return phase_fails(phases, trial, &broken, result);
 }
 
 bool prove_colour(struct trial *trial)
@@ -187,7 +277,7 @@ bool prove_colour(struct trial *trial)
 	    !cycles_of(&phases, trial->lap.ticks, &result.cycles_per_frame))
 		result.repeats_known = false;
 	bool failed_before = proofs->proof[PROOF_COLOUR].verdict == VERDICT_FAIL;
-	if (!demand_phase(trial, &phases))
+	if (!demand_phase(trial, &phases, &result))
 		return false;
 	bool fails_first = proofs->proof[PROOF_COLOUR].verdict == VERDICT_FAIL && !failed_before;
 	if (trial->bank == 0 || fails_first)

@@ -49,6 +49,7 @@ struct counterexample {
 	bool byte_known;
 	struct byte_place byte;
 	const char *what;      // what went wrong, in words, with expected and found
+	const char *hint;      // what may help; NULL if nothing is known
 };
 
 struct closure_result {

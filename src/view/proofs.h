@@ -55,7 +55,8 @@ void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind k
 //   "sweep":    { "sweeps": [ { "bits": as the plan has them, "kept": true or false, "values", "missing", and if some are
 //                 "first_missing", times worst_gap and within (_s, _ms), "worst_value" } ] }
 //
-// counterexample: { "what": in words, with expected and found, "bank", PLACE (not of power-up), "state" (whose row was read; left out where
+// counterexample: { "what": in words, with expected and found, "bank", "hint" (what may help, if
+//   something is known), PLACE (not of power-up), "state" (whose row was read; left out where
 //   there are no images, and where the fault may follow from the earlier one of another proof), "signal": its name, if a pin is
 //   wrong, and if a byte is to blame "chip": label, "address", "byte" (of a 16-bit chip: the word, and its address counts words) }.
 //   One without a place or state has "what" and "bank" only.

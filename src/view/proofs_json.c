@@ -36,6 +36,8 @@ static json_t *counterexample_json(const struct proofs *proofs, enum proof_kind 
 	json_t *object = json_object();
 	json_put(&object, "what", json_string(found->what));
 	json_put(&object, "bank", count(found->bank));
+	if (found->hint != NULL)
+		json_put(&object, "hint", json_string(found->hint));
 	if (!found->present)
 		return object;
 	if (has_place(proofs, kind))

@@ -134,6 +134,10 @@ static void detail_counterexample(struct report *report, enum proof_kind kind)
 		detail_place(report, found);
 	if (found->present && found->byte_known)
 		detail_byte(report, found);
+	if (found->hint != NULL) {
+		text_printf(&report->words, "hint: %s", found->hint);
+		end_detail(report);
+	}
 }
 
 static void detail_second_loop(struct report *report)

@@ -164,13 +164,37 @@ static void unequal_lines(void **test)
 	const struct counterexample *found = &proofs->proof[PROOF_COLOUR].counterexample;
 	assert_true(found->present);
 	assert_int_equal(found->cell, 1);
-	assert_string_equal(found->what, "2 lines from line 1 on take 1822 ticks, which are 911/2 subcarrier cycles, expected a whole "
-	                    "number");
+	assert_string_equal(found->what, "2 lines from line 1 on take 1822 ticks, 911/2 cycles, expected a whole number; 2 of 4 such "
+	                    "runs are not whole");
+	// Two unequal lengths have no nearest length; four lines are whole.
+	assert_string_equal(found->hint, "the lines meet \"every 4 lines\"");
 	assert_int_equal(proofs->colour.repeats_lines, 4);
 	proofs_destroy(proofs);
 	hand->plan.clock.phase = PHASE_FRAMES;
 	hand->plan.clock.phase_count = 1;
 	demand(hand, PHASE_FRAMES, 1, VERDICT_PASS);
+	by_hand_destroy(hand);
+}
+
+// 912, 910, 912: line 1 alone is not whole. The phase repeats after six lines, more than the frame has.
+static void words_for_one_line(void **test)
+{
+	(void)test;
+	struct by_hand *hand = lines_of(3, 910, 2, (bool[]){true, false, true}, SUBCARRIER_525);
+	hand->plan.clock.phase = PHASE_LINES;
+	hand->plan.clock.phase_count = 1;
+	struct proofs *proofs = prove(hand, 0);
+	const struct counterexample *found = &proofs->proof[PROOF_COLOUR].counterexample;
+	assert_int_equal(found->cell, 1);
+	assert_string_equal(found->what, "line 1 takes 910 ticks, 455/2 cycles, expected a whole number; all other lines are whole");
+	assert_string_equal(found->hint, "lines of 908 or 912 ticks would meet it");
+	proofs_destroy(proofs);
+	// Planned as 912 ticks like the others, the plan is right and the machine wrong: nothing to mend in the plan.
+	hand->types[hand->timeline.lines[1].type].ticks = 912;
+	proofs = prove(hand, 0);
+	assert_verdict(proofs, PROOF_COLOUR, VERDICT_FAIL);
+	assert_null(proofs->proof[PROOF_COLOUR].counterexample.hint);
+	proofs_destroy(proofs);
 	by_hand_destroy(hand);
 }
 
@@ -181,8 +205,11 @@ static void words_for_frames(void **test)
 	hand->plan.clock.phase = PHASE_FRAMES;
 	hand->plan.clock.phase_count = 1;
 	struct proofs *proofs = prove(hand, 0);
-	assert_string_equal(proofs->proof[PROOF_COLOUR].counterexample.what, "1 frame from line 0 on take 2730 ticks, which are 1365/2 "
-	                    "subcarrier cycles, expected a whole number");
+	assert_string_equal(proofs->proof[PROOF_COLOUR].counterexample.what, "1 frame takes 2730 ticks, 1365/2 cycles, expected a whole "
+	                    "number");
+	// A frame is 3 lines: 2730 is no multiple of 4, and neither is a line; 908 and 912 are. Two lines are 455 cycles.
+	assert_string_equal(proofs->proof[PROOF_COLOUR].counterexample.hint, "lines of 908 or 912 ticks would meet it; as they are, they "
+	                    "meet \"every 2 lines\"");
 	proofs_destroy(proofs);
 	by_hand_destroy(hand);
 }
@@ -285,6 +312,7 @@ int main(void)
 		cmocka_unit_test(lines_of_1136_ticks),
 		cmocka_unit_test(frame_of_625_lines),
 		cmocka_unit_test(unequal_lines),
+		cmocka_unit_test(words_for_one_line),
 		cmocka_unit_test(words_for_frames),
 		cmocka_unit_test(nothing_demanded),
 		cmocka_unit_test(ticks_come_from_the_pins),

@@ -105,11 +105,11 @@ static void a_fault_of_no_byte_and_no_pin_has_no_such_keys(void **state)
 	harbour_fill(&harbour);
 	harbour.proofs.colour = (struct colour_result){true, {909, 4}, {119079, 2}, true, 4, 2};
 	harbour_fails(&harbour, PROOF_COLOUR, (struct counterexample){.present = true, .bank = 3, .cell = 101, .state = 101,
-		.signal = SIZE_MAX, .what = "1 line takes 909/4 cycles"});
+		.signal = SIZE_MAX, .what = "1 line takes 909/4 cycles", .hint = "longer lines"});
 	assert_proof(&harbour, PROOF_COLOUR,
 		"{'verdict':'fail','must':true,'uniform':true,'cycles_per_line':'909/4','cycles_per_line_rounded':227.25,"
 		"'cycles_per_frame':'119079/2','cycles_per_frame_rounded':59539.5,'repeats_lines':4,'repeats_frames':2,"
-		"'asked':'every line','counterexample':{'what':'1 line takes 909/4 cycles','bank':3,'line':1,'line_type':'border',"
+		"'asked':'every line','counterexample':{'what':'1 line takes 909/4 cycles','bank':3,'hint':'longer lines','line':1,'line_type':'border',"
 		"'cell':0,'region':'front porch','frame_cell':101,'state':101}}");
 	harbour.proofs.proof[PROOF_COLOUR].counterexample.state = NO_STATE;
 	json_t *proofs = view_proofs_json(&harbour.proofs);

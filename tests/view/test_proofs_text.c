@@ -211,22 +211,24 @@ static void a_phase_that_does_not_repeat_is_shown(void **state)
 	harbour.proofs.colour = (struct colour_result){true, {909, 4}, {119079, 2}, true, 4, 2};
 	harbour.plan.clock.phase_count = 2;
 	harbour_fails(&harbour, PROOF_COLOUR, (struct counterexample){.present = true, .cell = 101, .state = 0x0065,
-		.signal = SIZE_MAX, .what = "2 lines from line 1 on take 1818 ticks, which are 909/2 subcarrier cycles, "
-		"expected a whole number"});
+		.signal = SIZE_MAX, .what = "2 lines from line 1 on take 1818 ticks, 909/2 cycles, expected a whole number; all "
+		"other such runs are whole", .hint = "the lines meet \"every 4 lines\""});
 	assert_proof(&harbour, PROOF_COLOUR,
 		"FAIL  colour    909/4 (227.25) cycles a line; the phase repeats every 4 lines and every 2 frames;\n"
 		"                asked: every 2 lines\n"
-		"      2 lines from line 1 on take 1818 ticks, which are 909/2 subcarrier cycles, expected a whole\n"
-		"        number\n"
-		"      at line 1 (border), cell 0 (front porch); cell 101 of the frame, state 0x0065\n");
+		"      2 lines from line 1 on take 1818 ticks, 909/2 cycles, expected a whole number; all other such\n"
+		"        runs are whole\n"
+		"      at line 1 (border), cell 0 (front porch); cell 101 of the frame, state 0x0065\n"
+		"      hint: the lines meet \"every 4 lines\"\n");
 	// Before images are made there are no states.
 	harbour.proofs.proof[PROOF_COLOUR].counterexample.state = NO_STATE;
 	assert_proof(&harbour, PROOF_COLOUR,
 		"FAIL  colour    909/4 (227.25) cycles a line; the phase repeats every 4 lines and every 2 frames;\n"
 		"                asked: every 2 lines\n"
-		"      2 lines from line 1 on take 1818 ticks, which are 909/2 subcarrier cycles, expected a whole\n"
-		"        number\n"
-		"      at line 1 (border), cell 0 (front porch); cell 101 of the frame\n");
+		"      2 lines from line 1 on take 1818 ticks, 909/2 cycles, expected a whole number; all other such\n"
+		"        runs are whole\n"
+		"      at line 1 (border), cell 0 (front porch); cell 101 of the frame\n"
+		"      hint: the lines meet \"every 4 lines\"\n");
 }
 
 static void colour_names_what_is_asked(void **state)
