@@ -8,6 +8,7 @@
 #include "base/text.h"
 #include "layout/timeline.h"
 #include "proof/proof.h"
+#include "view/chips.h"
 #include "view/columns.h"
 #include "view/figures.h"
 #include "view/proofs.h"
@@ -201,6 +202,9 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 		for (size_t type = 0; type < plan->line_count; type++)
 			put_line(out, timeline, type, uses[type]);
 		put_frame(out, timeline);
+		text_put(out, "\n");
+		view_chips(out, plan);
+		text_put(out, "\n");
 		view_proof(out, proofs, PROOF_COLOUR, false);
 		view_proof(out, proofs, PROOF_SPEED, false);
 		if (kept != NULL)

@@ -1,4 +1,4 @@
-// What a plan lays out: lines, regions, positions, roundings, frame, colour and speed.
+// What a plan lays out: lines, regions, positions, roundings, frame, chips and their wiring, colour and speed.
 #ifndef SCANLATCH_VIEW_CHECK_H
 #define SCANLATCH_VIEW_CHECK_H
 
@@ -21,6 +21,7 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 //                                 "asked_ticks", "asked_us", "rounding_ticks", "rounding_us" (not of a fill),
 //                                 "asserted": [signal…] } ] } ],
 //     "frame": see view/manifest.h,
+//     "chips": [ { "label", "part", "access_s", "access_ns", "address": [wire…], "data": [wire…] } ]: see view/chips.h,
 //     "proofs": { "colour", "speed" } as in view/proofs.h }
 // Exact values are strings (ticks, fractions); rounded ones are numbers. A new reference; NULL when memory is out.
 json_t *view_check_json(const struct timeline *timeline, bool *kept, bool *advice_kept);

@@ -4,6 +4,7 @@
 #include "layout/timeline.h"
 #include "proof/proof.h"
 #include "view/check.h"
+#include "view/chips.h"
 #include "view/figures.h"
 #include "view/manifest.h"
 #include "view/proofs.h"
@@ -143,6 +144,7 @@ json_t *view_check_json(const struct timeline *timeline, bool *kept, bool *advic
 	json_put(&object, "clock", clock_json(&timeline->plan->clock));
 	json_put(&object, "lines", lines_json(timeline));
 	json_put(&object, "frame", view_frame_json(timeline));
+	json_put(&object, "chips", view_chips_json(timeline->plan));
 	json_put(&object, "proofs", judgement_json(timeline, kept, advice_kept));
 	return object;
 }

@@ -4,6 +4,7 @@
 #include "image/image.h"
 #include "proof/proof.h"
 #include "scanlatch/scanlatch.h"
+#include "view/chips.h"
 #include "view/figures.h"
 #include "view/proofs.h"
 
@@ -26,6 +27,8 @@ static json_t *chips_json(const struct plan *plan, const struct image *images, u
 		                          (json_int_t)images[index].length, "crc32", json_sprintf("%08x", (unsigned)image_crc32(&images[index])),
 		                          "sum16", (int)image_sum16(&images[index]));
 		json_object_set_new(entry, "files", file_names(plan->name, chip->label, files));
+		json_object_set_new(entry, "address", view_address_json(chip));
+		json_object_set_new(entry, "data", view_data_json(plan, chip));
 		json_array_append_new(chips, entry);
 	}
 	return chips;

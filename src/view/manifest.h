@@ -11,7 +11,8 @@ struct timeline;
 // The manifest as
 //   { "format": 1, "name",
 //     "plan": { "file", "crc32" },
-//     "chips": [ { "label", "part", "bytes", "crc32", "sum16", "files": [NAME…] } ],
+//     "chips": [ { "label", "part", "bytes", "crc32", "sum16", "files": [NAME…],
+//                  "address": [wire…], "data": [wire…]: see view/chips.h } ],
 //     "start": [ { "bank", "stage", "state" } ],
 //     "frame": { "lines", "cells", "ticks" (string), "rate": { "fraction" (Hz), "decimal" } },
 //     "proofs": see view/proofs.h }

@@ -50,7 +50,8 @@ def check_chips(plan, chips, folder, formats, manifest):
 	for chip, entry in zip(chips, manifest["chips"]):
 		files = [f"{plan.name}.{chip.label}.{kind}" for kind in formats]
 		expect(f"chip {chip.label}", {"label": chip.label, "part": chip.part, "bytes": chip.capacity, "crc32": crc32(chip.image),
-			"sum16": sum(chip.image) % 65536, "files": files}, entry)
+			"sum16": sum(chip.image) % 65536, "files": files, "address": [wire or "-" for wire in chip.address],
+			"data": [wire or "-" for wire in chip.data]}, entry)
 	wanted = sorted(name for entry in manifest["chips"] for name in entry["files"]) + [f"{plan.name}.manifest.json"]
 	expect("files in the folder", sorted(wanted), sorted(os.listdir(folder)))
 
