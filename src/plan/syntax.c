@@ -15,6 +15,8 @@ struct phrase {
 static const char tag_hint[] = "quote a text that begins with '!'";
 static const char directive_hint[] = "quote a text that begins with '%'";
 static const char bracket_hint[] = "no bracket is open here that this one could close";
+static const char space_hint[] = "put a space after ':'";
+static const char indent_hint[] = "give keys that belong to one mapping, and items of one list, the same indentation";
 static const char tab_hint[] = "indent with spaces only";
 
 static const struct phrase phrases[] = {
@@ -137,12 +139,29 @@ static void explain_quote(struct diagnostics *diagnostics, const struct syntax_f
 	         "wanted a closing quote to this one, found the end of the file");
 }
 
-static void explain_key(struct diagnostics *diagnostics, const struct syntax_fault *fault)
+// The offset of the first ':' from the position to the end of its line if no blank follows it, as in "cell:16"; else 0.
+static size_t glued_colon(const struct position *position)
+{
+	const char *const bytes = position->source->bytes;
+	const size_t end = position->offset + rest_of_line(position);
+	for (size_t offset = position->offset; offset + 1 < end; offset++)
+		if (bytes[offset] == ':')
+			return bytes[offset + 1] == ' ' || bytes[offset + 1] == '\t' ? 0 : offset;
+	return 0;
+}
+
+static void report_missing_colon(struct diagnostics *diagnostics, const struct position *key)
 {
 	char buffer[QUOTATION_BYTES];
 
-	diagnose(diagnostics, RULE_YAML_SYNTAX, position_place(&fault->opened), "wanted ':' after the key %s",
-	         found_words(buffer, &fault->opened));
+	diagnose(diagnostics, RULE_YAML_SYNTAX, position_place(key), "wanted ':' after the key %s", found_words(buffer, key));
+	if (glued_colon(key) > 0)
+		diagnose_hint(diagnostics, "%s", space_hint);
+}
+
+static void explain_key(struct diagnostics *diagnostics, const struct syntax_fault *fault)
+{
+	report_missing_colon(diagnostics, &fault->opened);
 }
 
 // True if the line holds another ": " before the position, so that the position's is a second one.
@@ -160,6 +179,70 @@ static bool has_earlier_colon(const struct position *position)
 	return false;
 }
 
+static bool begins_item(struct position position)
+{
+	if (position_byte(&position) != '-')
+		return false;
+	position_step(&position);
+	return position_byte(&position) == ' ';
+}
+
+// The first character of the position's line that is neither a blank nor a list's '-': where its key begins.
+static struct position line_content(struct position position)
+{
+	const char *const bytes = position.source->bytes;
+	while (position.offset > 0 && position.column > 1) {
+		position.offset--;
+		if (((unsigned char)bytes[position.offset] & 0xC0u) != 0x80u) // a character's first byte
+			position.column--;
+	}
+	while (position_byte(&position) == ' ' || position_byte(&position) == '\t' || begins_item(position))
+		position_step(&position);
+	return position;
+}
+
+static bool has_colon(const struct position *position)
+{
+	return memchr(position->source->bytes + position->offset, ':', rest_of_line(position)) != NULL;
+}
+
+// Where the content of the nearest line above begins that has any and is no comment. False if there is none.
+static bool content_above(const struct position *position, struct position *result)
+{
+	struct position walk = position_start(position->source);
+	bool found = false;
+	while (walk.line < position->line) {
+		const struct position content = line_content(walk);
+		if (!is_end_of_line(position_byte(&content)) && position_byte(&content) != '#') {
+			*result = content;
+			found = true;
+		}
+		for (const uint32_t line = walk.line; walk.line == line;)
+			position_step(&walk);
+	}
+	return found;
+}
+
+// A key where the line above leaves none: that line's value, or one of the two indentations, is wrong.
+static void explain_misplaced_key(struct diagnostics *diagnostics, const struct position *key)
+{
+	struct position above;
+	const bool found = content_above(key, &above);
+	if (found && (glued_colon(&above) > 0 || (above.column < key->column && !has_colon(&above)))) {
+		report_missing_colon(diagnostics, &above);
+	} else if (found && above.column != key->column) {
+		diagnose(diagnostics, RULE_YAML_SYNTAX, position_place(key),
+		         "wanted a key in the column of the line above, %lu, found one in column %lu", (unsigned long)above.column,
+		         (unsigned long)key->column);
+		diagnose_also(diagnostics, position_place(&above), "the line above begins here");
+		diagnose_hint(diagnostics, "one of the two is indented differently from its neighbours");
+	} else {
+		diagnose(diagnostics, RULE_YAML_SYNTAX, position_place(key),
+		         "wanted more of the value that a line above began, found a key");
+		diagnose_hint(diagnostics, "end the line above with ':' if the key is part of it; quote a value that has ': ' in it");
+	}
+}
+
 static void explain_colon(struct diagnostics *diagnostics, const struct syntax_fault *fault)
 {
 	if (has_earlier_colon(&fault->found)) {
@@ -167,10 +250,8 @@ static void explain_colon(struct diagnostics *diagnostics, const struct syntax_f
 		         "wanted one key on a line, found a second ':'");
 		diagnose_hint(diagnostics, "quote a value that has ': ' in it, or write a mapping as {key: value}");
 	} else {
-		diagnose(diagnostics, RULE_YAML_SYNTAX, position_place(&fault->found),
-		         "wanted more of the value that the line before began, found a key");
-		diagnose_hint(diagnostics, "end the line before with ':' if the key is part of it; "
-		                           "else begin both in the same column");
+		const struct position key = line_content(fault->found);
+		explain_misplaced_key(diagnostics, &key);
 	}
 }
 
@@ -252,6 +333,7 @@ static void explain_indentation(struct diagnostics *diagnostics, const struct sy
 		         (unsigned long)fault->found.column);
 		diagnose_also(diagnostics, position_place(&fault->opened), "the %s begins here",
 		              is_list ? "list" : "mapping");
+		diagnose_hint(diagnostics, "%s", indent_hint);
 	} else {
 		diagnose(diagnostics, RULE_YAML_SYNTAX, place, "wanted %s, found %s", is_list ? "'- '" : "a key", found);
 		diagnose_also(diagnostics, position_place(&fault->opened), "the %s begins here",

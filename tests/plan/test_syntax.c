@@ -395,25 +395,53 @@ static const struct refused_text refused_texts[] = {
 	 "  clock\n"
 	 "  ^\n"},
 	{TEXT("clock\n" "  dot: 1\n"),
-	 "plan:2:6: error: wanted more of the value that the line before began, found a key [yaml-syntax]\n"
-	 "    dot: 1\n"
-	 "       ^\n"
-	 "  hint: end the line before with ':' if the key is part of it; else begin both in the same column\n"},
+	 "plan:1:1: error: wanted ':' after the key 'clock' [yaml-syntax]\n"
+	 "  clock\n"
+	 "  ^\n"},
+	{TEXT("clock:\n" "  dot: 1\n" "  cell:16 ticks\n" "name: x\n"),
+	 "plan:3:3: error: wanted ':' after the key 'cell:16 ticks' [yaml-syntax]\n"
+	 "    cell:16 ticks\n"
+	 "    ^\n"
+	 "  hint: put a space after ':'\n"},
+	{TEXT("clock:\n" "  cell:16 ticks\n" "\n" "  dot: 1\n"),
+	 "plan:2:3: error: wanted ':' after the key 'cell:16 ticks' [yaml-syntax]\n"
+	 "    cell:16 ticks\n"
+	 "    ^\n"
+	 "  hint: put a space after ':'\n"},
 	{TEXT("note: tide: board\n"),
 	 "plan:1:11: error: wanted one key on a line, found a second ':' [yaml-syntax]\n"
 	 "  note: tide: board\n"
 	 "            ^\n"
 	 "  hint: quote a value that has ': ' in it, or write a mapping as {key: value}\n"},
 	{TEXT("a: b\n" "  c: d\n"),
-	 "plan:2:4: error: wanted more of the value that the line before began, found a key [yaml-syntax]\n"
+	 "plan:2:3: error: wanted a key in the column of the line above, 1, found one in column 3 [yaml-syntax]\n"
 	 "    c: d\n"
+	 "    ^\n"
+	 "plan:1:1: note: the line above begins here\n"
+	 "  hint: one of the two is indented differently from its neighbours\n"},
+	{TEXT("- a: b\n" "  c: d\n" "   e: f\n"),
+	 "plan:3:4: error: wanted a key in the column of the line above, 3, found one in column 4 [yaml-syntax]\n"
+	 "     e: f\n"
 	 "     ^\n"
-	 "  hint: end the line before with ':' if the key is part of it; else begin both in the same column\n"},
+	 "plan:2:3: note: the line above begins here\n"
+	 "  hint: one of the two is indented differently from its neighbours\n"},
+	{TEXT("- a: b\n" "     c: d\n"),
+	 "plan:2:6: error: wanted a key in the column of the line above, 3, found one in column 6 [yaml-syntax]\n"
+	 "       c: d\n"
+	 "       ^\n"
+	 "plan:1:3: note: the line above begins here\n"
+	 "  hint: one of the two is indented differently from its neighbours\n"},
+	{TEXT("a: b\n" "  c\n" "  d: e\n"),
+	 "plan:3:3: error: wanted more of the value that a line above began, found a key [yaml-syntax]\n"
+	 "    d: e\n"
+	 "    ^\n"
+	 "  hint: end the line above with ':' if the key is part of it; quote a value that has ': ' in it\n"},
 	{TEXT("a:\n" "   b: c\n" "  d: e\n"),
 	 "plan:3:3: error: wanted a key in column 1, found 'd: e' in column 3 [yaml-syntax]\n"
 	 "    d: e\n"
 	 "    ^\n"
-	 "plan:1:1: note: the mapping begins here\n"},
+	 "plan:1:1: note: the mapping begins here\n"
+	 "  hint: give keys that belong to one mapping, and items of one list, the same indentation\n"},
 	{TEXT("- a\n" "b: c\n"),
 	 "plan:2:1: error: wanted '- ', found 'b: c' [yaml-syntax]\n"
 	 "  b: c\n"
@@ -433,7 +461,8 @@ static const struct refused_text refused_texts[] = {
 	 "plan:2:2: error: wanted '- ' in column 1, found '- b' in column 2 [yaml-syntax]\n"
 	 "   - b\n"
 	 "   ^\n"
-	 "plan:1:1: note: the list begins here\n"},
+	 "plan:1:1: note: the list begins here\n"
+	 "  hint: give keys that belong to one mapping, and items of one list, the same indentation\n"},
 	{TEXT("a: - b\n"),
 	 "plan:1:4: error: wanted a value, found '- b' [yaml-syntax]\n"
 	 "  a: - b\n"
