@@ -143,8 +143,17 @@ static const struct part *read_part(struct reader *reader, const struct node **v
 	return part;
 }
 
-// Names the smallest part of the same width that has the address pins.
-static void hint_larger_part(struct reader *reader, const struct part *small, unsigned address_pins)
+// True if two names begin alike up to the first digit after a letter: 28C64 and 28C256.
+static bool same_family(const char *left, const char *right)
+{
+	static const char digits[] = "0123456789";
+	size_t length = strspn(left, digits);
+	length += strcspn(left + length, digits);
+	return strncmp(left, right, length) == 0 && strspn(right + length, digits) > 0;
+}
+
+// The smallest part of the width that has the address pins, in the family of `small` or outside it; NULL if there is none.
+static const struct part *larger_part(const struct reader *reader, const struct part *small, unsigned address_pins, bool in_family)
 {
 	const struct part *best = NULL;
 	const struct catalogue *catalogue = reader->catalogue;
@@ -152,11 +161,23 @@ static void hint_larger_part(struct reader *reader, const struct part *small, un
 		const struct part *part = index < reader->own_part_count ? &reader->own_parts[index]
 		                                                         : &catalogue->parts[index - reader->own_part_count];
 		if (part->data_pins == small->data_pins && part->address_pins >= address_pins &&
-		    (best == NULL || part->address_pins < best->address_pins))
+		    same_family(small->name, part->name) == in_family && (best == NULL || part->address_pins < best->address_pins))
 			best = part;
 	}
-	if (best != NULL)
-		diagnose_hint(reader->diagnostics, "part %s with %u address pins would do", best->name, best->address_pins);
+	return best;
+}
+
+// What is programmed in the same way comes first; another family may have a smaller one.
+static void hint_larger_part(struct reader *reader, const struct part *small, unsigned address_pins)
+{
+	const struct part *like = larger_part(reader, small, address_pins, true);
+	const struct part *other = larger_part(reader, small, address_pins, false);
+	if (like != NULL && other != NULL && other->address_pins < like->address_pins)
+		diagnose_hint(reader->diagnostics, "part %s with %u address pins would do, or %s with %u", like->name, like->address_pins,
+		              other->name, other->address_pins);
+	else if (like != NULL || other != NULL)
+		diagnose_hint(reader->diagnostics, "part %s with %u address pins would do", like != NULL ? like->name : other->name,
+		              like != NULL ? like->address_pins : other->address_pins);
 	else
 		diagnose_hint(reader->diagnostics, "no part of that width is large enough: use fewer state bits, or add one under parts");
 }
