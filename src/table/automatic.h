@@ -1,9 +1,10 @@
 // codes: auto. Gives each value of a field to one of the patterns that cells ask of the field. For the table's own use.
 //
-// With nothing held in the field but whole values, and no other field with signals sharing its bits, all values that no
-// cell holds are alike, and patterns do not compete but for their number; each pattern then gets as few as it must,
+// With nothing held in the field but whole values, and no other field with signals sharing its bits, all values that
+// no cell holds are alike, and patterns do not compete but for their number; each pattern then gets as few as it must,
 // growing only when matching has shown that it needs more. For a single such field codes are found whenever there are
-// any, and a shortage is proved. Otherwise labels are found so where that goes well, and searched for where it does not.
+// any, and a shortage is proved. Otherwise labels are found so where that goes well, and searched for where it does
+// not.
 #ifndef SCANLATCH_TABLE_AUTOMATIC_H
 #define SCANLATCH_TABLE_AUTOMATIC_H
 

@@ -3,237 +3,129 @@
 #include <string.h>
 
 #include "base/arena.h"
-#include "table/search.h"
-#include "table/walk.h"
+#include "table/attempt.h"
+#include "table/closing.h"
 
-struct solver {
+// Without a start the first cell's state is free. Quiet edges come first: state 0, which a cleared latch holds, is
+// taken where no other costs fewer jumps.
+struct choice {
+	struct solver *solver;
 	struct arena *arena;
-	const struct constraints *constraints;
-	struct code_space codes;
-	struct code_choice *choices;       // [field_count]
-	struct automatic_field *automatic; // [automatic_count]
-	size_t automatic_count;
-	struct assignment assignment;
+	uint32_t *states; // [period]: the quietest assignment so far
+	uint64_t jumps;   // in it
+	bool found;
 };
 
-static void fill_codes(struct solver *solver)
+// Keeps the solver's assignment if it is the quietest so far; of two alike, the one with state 0. False when memory is
+// out.
+static bool keep_if_quieter(struct choice *choice)
 {
-	for (size_t index = 0; index < solver->automatic_count; index++) {
-		automatic_assert(&solver->automatic[index]);
-		solver->choices[index] =
-			(struct code_choice){solver->automatic[index].field, solver->automatic[index].asserted};
-	}
-	code_space_fill(&solver->codes, solver->choices, solver->automatic_count);
-}
-
-static bool assign(struct assignment *assignment, struct arena *arena, bool quietly, struct faults *faults)
-{
-	struct quiet *quiet = NULL;
-	if (!assignment_begin(assignment, faults))
+	const struct assignment *assignment = &choice->solver->assignment;
+	const bool zero = assignment->state_of_cell[0] == 0;
+	uint64_t jumps;
+	if (!closing_count(assignment, choice->arena, &jumps))
 		return false;
-	if (quietly && (quiet = quiet_create(arena, assignment)) == NULL)
-		return faults_memory(faults);
-	if (!assignment_hold(assignment, arena, quiet, faults))
-		return false;
-	return !quietly || walk_place(assignment, quiet, arena) || faults_memory(faults);
-}
-
-// Assigns states under the codes as they are. Without `quietly` it only finds out whether that can be done.
-static bool try_codes(struct solver *solver, bool quietly, struct faults *faults)
-{
-	struct arena *arena = arena_create();
-	if (arena == NULL)
-		return faults_memory(faults);
-	fill_codes(solver);
-	const bool assigned = assign(&solver->assignment, arena, quietly, faults);
-	arena_destroy(arena);
-	return assigned;
-}
-
-// Gives the pattern of a fault's cell more codes of some field. *shortage becomes a fault of the first field that has
-// none to spare.
-static enum repair repair_codes(struct solver *solver, const struct fault *fault, struct fault *shortage)
-{
-	enum repair best = REPAIR_HOPELESS;
-	for (size_t index = 0; index < solver->automatic_count && best != REPAIR_DONE; index++) {
-		const enum repair repair = automatic_repair(&solver->automatic[index], fault);
-		if (repair == REPAIR_SHORT && best == REPAIR_HOPELESS)
-			*shortage = automatic_fault(&solver->automatic[index], fault->cell);
-		if (repair != REPAIR_HOPELESS)
-			best = repair;
-	}
-	return best;
-}
-
-// Copies the labels of all fields to or from `labels`.
-static void copy_labels(struct solver *solver, uint32_t *labels, bool back)
-{
-	for (size_t index = 0; index < solver->automatic_count; index++) {
-		const struct automatic_field *field = &solver->automatic[index];
-		if (back)
-			memcpy(field->label, labels, field->values * sizeof *labels);
-		else
-			memcpy(labels, field->label, field->values * sizeof *labels);
-		labels += field->values;
-	}
-}
-
-// Tries labels that were found for quieter ones, which may be too few for the cells, and falls back on them.
-static bool try_arranged(struct solver *solver, struct arena *arena, struct faults *faults)
-{
-	struct faults ignored = {.count = 0};
-	size_t values = 0;
-	for (size_t index = 0; index < solver->automatic_count; index++)
-		values += solver->automatic[index].values;
-	uint32_t *labels = arena_array(arena, values, sizeof *labels);
-	if (labels == NULL)
-		return faults_memory(faults);
-	copy_labels(solver, labels, false);
-	for (size_t index = 0; index < solver->automatic_count; index++)
-		if (!automatic_arrange(&solver->automatic[index], arena))
-			return faults_memory(faults);
-	if (try_codes(solver, true, &ignored))
+	if (choice->found && (jumps > choice->jumps || (jumps == choice->jumps && !zero)))
 		return true;
-	copy_labels(solver, labels, true);
-	return ignored.memory_out ? faults_memory(faults) : try_codes(solver, true, faults);
+	memcpy(choice->states, assignment->state_of_cell, assignment->constraints->period * sizeof *choice->states);
+	choice->found = true;
+	choice->jumps = jumps;
+	return true;
 }
 
-static bool search_codes_in(struct solver *solver, struct arena *arena, struct faults *faults)
+// Tries a start under the codes as they are, and keeps what it finds if that is quieter.
+static bool try_start(struct choice *choice, bool start_fixed, uint32_t start, struct faults *faults)
 {
-	struct fault fault;
-	code_space_fill(&solver->codes, NULL, 0);
-	const enum search_result result =
-		search_labels(solver->automatic, solver->automatic_count, &solver->assignment, arena, &fault);
-	if (result == SEARCH_MEMORY)
-		return faults_memory(faults);
-	faults->count = 0;
-	if (result == SEARCH_FOUND)
-		return try_arranged(solver, arena, faults);
-	faults_add(faults, fault);
-	return false;
+	struct faults failed = {.count = 0};
+	if (attempt_start_again(choice->solver, start_fixed, start, &failed))
+		return keep_if_quieter(choice) || faults_memory(faults);
+	if (!choice->found)
+		*faults = failed;
+	return !failed.memory_out || faults_memory(faults);
 }
 
-static bool search_codes(struct solver *solver, struct faults *faults)
+// The lowest state with a code that the first cell may have and no other cell must; NO_STATE if there is none.
+static uint32_t first_state(const struct assignment *assignment, uint32_t code)
 {
-	struct arena *arena = arena_create();
-	const bool found = arena != NULL ? search_codes_in(solver, arena, faults) : faults_memory(faults);
-	arena_destroy(arena);
-	return found;
-}
-
-static bool label_fields(struct solver *solver, struct faults *faults)
-{
-	bool good = true;
-	for (size_t index = 0; index < solver->automatic_count; index++)
-		good = automatic_label(&solver->automatic[index], &solver->assignment, solver->arena, faults) && good;
-	return good;
-}
-
-// True if a cell's hold, or the start, fixes all bits of fields with automatic codes.
-static bool holds_codes(const struct solver *solver, uint32_t cell)
-{
-	uint32_t bits = 0;
-	for (size_t index = 0; index < solver->automatic_count; index++)
-		bits |= field_mask(solver->automatic[index].field);
-	return cell_is_fixed(&solver->assignment, cell) || (bits & ~cell_mask(solver->constraints, cell)) == 0;
-}
-
-// True if under the listed codes alone some code would do for a cell.
-static bool listed_codes_allow(const struct solver *solver, uint32_t cell)
-{
-	const struct constraints *constraints = solver->constraints;
+	const struct constraints *constraints = assignment->constraints;
 	const uint32_t decoder = constraints->decoder_mask;
-	const uint32_t free = decoder & ~cell_mask(constraints, cell);
-	uint64_t listed = constraints->field_signals;
+	const uint32_t free = constraints->state_mask & ~(cell_mask(constraints, 0) | decoder);
+	const uint32_t base = (cell_value(constraints, 0) & ~decoder) | state_of_code(assignment->codes, code);
 	uint32_t subset = 0;
-	for (size_t index = 0; index < solver->automatic_count; index++)
-		listed &= ~solver->automatic[index].automatic;
 	do {
-		const uint32_t code = code_of_state(&solver->codes, (cell_value(constraints, cell) & decoder) | subset);
-		if (((solver->codes.levels[code] ^ cell_levels(constraints, cell)) & listed) == 0)
-			return true;
+		if (assignment->owner[base | subset] == 0)
+			return base | subset;
 		subset = next_subset(subset, free);
 	} while (subset != 0);
-	return false;
+	return NO_STATE;
 }
 
-// True if no choice of codes can mend a fault.
-static bool is_beyond_codes(const struct solver *solver, const struct fault *fault)
+// A state for the first cell with which the frame can be closed most quietly: 0 if that is one; NO_STATE if none is
+// known.
+static uint32_t quietest_start(const struct assignment *assignment, const struct closing *closing)
 {
-	if (fault->rule == RULE_CODE_CONFLICT)
-		return holds_codes(solver, fault->cell) || !listed_codes_allow(solver, fault->cell);
-	if (fault->rule == RULE_STATE_SHARED)
-		return holds_codes(solver, fault->cell) && holds_codes(solver, fault->other);
-	return fault->rule == RULE_START_CONFLICT;
+	const uint32_t codes = assignment->codes->count;
+	for (uint32_t code = 0; code < codes && closing->known; code++)
+		if (closing->costs[code] == 0 && first_state(assignment, code) != NO_STATE)
+			return first_state(assignment, code);
+	return NO_STATE;
 }
 
-// Drops the faults that a choice of codes may mend, if there are others, which it returns.
-static size_t keep_beyond_codes(const struct solver *solver, struct faults *faults)
+// Tries starts under the codes as they are, as far as one may be quieter than another. False when memory is out.
+static bool try_starts(struct choice *choice, struct faults *faults)
 {
-	size_t kept = 0;
-	for (size_t index = 0; index < faults->count; index++)
-		if (is_beyond_codes(solver, &faults->list[index]))
-			faults->list[kept++] = faults->list[index];
-	if (kept > 0)
-		faults->count = kept;
-	return kept;
-}
-
-// Tries codes, with more of them for the cells at fault, as long as that is possible.
-static enum repair try_repairs(struct solver *solver, struct fault *shortage, struct faults *faults)
-{
-	enum repair repair = REPAIR_DONE;
-	while (repair == REPAIR_DONE) {
-		faults->count = 0;
-		if (try_codes(solver, true, faults))
-			return REPAIR_DONE;
-		if (faults->memory_out || keep_beyond_codes(solver, faults) > 0)
-			return REPAIR_BEYOND;
-		repair = repair_codes(solver, &faults->list[0], shortage);
-	}
-	return repair;
-}
-
-// Finds codes and states together. Faults that no codes can mend are left as they are.
-static bool try_automatic(struct solver *solver, struct faults *faults)
-{
-	struct fault shortage = fault_at(RULE_CODES_SHORT, NO_CELL);
-	if (!label_fields(solver, faults))
+	struct solver *solver = choice->solver;
+	struct closing closing;
+	solver->assignment.start_fixed = false;
+	solver_fill_codes(solver);
+	if (!assignment_begin(&solver->assignment, faults))
+		return true;
+	if (solver->assignment.state_of_cell[0] != NO_STATE)
+		return try_start(choice, false, 0, faults);
+	if (!closing_find(&closing, choice->arena, &solver->assignment))
+		return faults_memory(faults);
+	const uint32_t start = quietest_start(&solver->assignment, &closing);
+	if (start != NO_STATE && start != 0 && !try_start(choice, true, start, faults))
 		return false;
-	const enum repair repair = try_repairs(solver, &shortage, faults);
-	if (repair == REPAIR_DONE || repair == REPAIR_BEYOND)
-		return repair == REPAIR_DONE;
-	if (solver->automatic_count > 1 || !automatic_is_uncut(&solver->automatic[0]))
-		return search_codes(solver, faults);
-	if (repair == REPAIR_SHORT) {
-		faults->count = 0;
-		faults_add(faults, shortage);
-	}
-	return false;
+	if (!try_start(choice, true, 0, faults))
+		return false;
+	return (choice->found && closing.known) || try_start(choice, false, 0, faults);
 }
 
-static bool try_start(struct solver *solver, bool start_fixed, uint32_t start, struct faults *faults)
+// Chooses codes for state 0, and if that is not quiet enough, for any start.
+static bool try_automatic(struct choice *choice, struct faults *faults)
 {
-	solver->assignment.start_fixed = start_fixed;
-	solver->assignment.start = start;
-	return solver->automatic_count > 0 ? try_automatic(solver, faults) : try_codes(solver, true, faults);
+	struct solver *solver = choice->solver;
+	struct faults ignored = {.count = 0};
+	if (attempt_start(solver, true, 0, &ignored) && !keep_if_quieter(choice))
+		return faults_memory(faults);
+	if (ignored.memory_out)
+		return faults_memory(faults);
+	if (choice->found && choice->jumps == 0)
+		return true;
+	if (attempt_start(solver, false, 0, choice->found ? &ignored : faults))
+		return keep_if_quieter(choice) ? try_starts(choice, faults) : faults_memory(faults);
+	return !ignored.memory_out || faults_memory(faults);
 }
 
-static bool create_solver(struct solver *solver, struct arena *arena, const struct constraints *constraints,
-                          uint32_t *state_of_cell)
+static bool choose_start(struct solver *solver, struct arena *arena, struct faults *faults)
 {
-	*solver = (struct solver){.arena = arena, .constraints = constraints};
-	solver->choices = arena_array(arena, constraints->plan->machine.field_count, sizeof *solver->choices);
-	return solver->choices != NULL && code_space_create(&solver->codes, arena, constraints) &&
-	       assignment_create(&solver->assignment, arena, &solver->codes, state_of_cell) &&
-	       automatic_create(arena, constraints, &solver->automatic, &solver->automatic_count);
+	struct choice choice = {.solver = solver, .arena = arena};
+	const size_t size = solver->constraints->period * sizeof *choice.states;
+	choice.states = arena_array(arena, solver->constraints->period, sizeof *choice.states);
+	if (choice.states == NULL)
+		return faults_memory(faults);
+	if (!(solver->automatic_count > 0 ? try_automatic(&choice, faults) : try_starts(&choice, faults)) || !choice.found)
+		return false;
+	memcpy(solver->assignment.state_of_cell, choice.states, size);
+	faults->count = 0;
+	return true;
 }
 
 bool solve_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell,
                   struct faults *faults)
 {
 	const struct machine_plan *machine = &constraints->plan->machine;
-	struct faults ignored = {.count = 0};
 	struct solver solver;
 	if (constraints->period > constraints->state_count) {
 		struct fault fault = fault_at(RULE_STATES_SHORT, NO_CELL);
@@ -242,11 +134,9 @@ bool solve_states(const struct constraints *constraints, struct arena *arena, ui
 		faults_add(faults, fault);
 		return false;
 	}
-	if (!create_solver(&solver, arena, constraints, state_of_cell))
+	if (!solver_create(&solver, arena, constraints, state_of_cell))
 		return faults_memory(faults);
 	if (machine->has_start)
-		return try_start(&solver, true, machine->start, faults);
-	if (try_start(&solver, true, 0, &ignored))
-		return true;
-	return ignored.memory_out ? faults_memory(faults) : try_start(&solver, false, 0, faults);
+		return attempt_start(&solver, true, machine->start, faults);
+	return choose_start(&solver, arena, faults);
 }

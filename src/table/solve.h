@@ -5,9 +5,10 @@
 #include "table/constraints.h"
 #include "table/faults.h"
 
-// Chooses states, and with them codes for signals with codes: auto, for a machine that advances by table. The first
-// cell gets the plan's start or else, wherever some assignment allows it, state 0, which a cleared latch holds. False
-// with faults if there is no assignment. state_of_cell[period] is then unspecified.
+// Chooses states, and with them codes for signals with codes: auto, for a machine that advances by table, as quietly
+// (see quiet.h) as is cheap to find. The first cell gets the plan's start or else, wherever that is possible and no
+// noisier than another, state 0, which a cleared latch holds. False with faults if no assignment was found; without
+// codes: auto there is none then, with it see automatic.h and search.c. state_of_cell[period] is then unspecified.
 bool solve_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell,
                   struct faults *faults);
 

@@ -19,7 +19,8 @@ static inline uint32_t below(struct numbers *numbers, uint32_t limit)
 	return (uint32_t)((numbers->state >> 20) % limit);
 }
 
-static inline void add_fields(struct bench *bench, struct numbers *numbers, unsigned bits, unsigned count, unsigned widest)
+static inline void add_fields(struct bench *bench, struct numbers *numbers, unsigned bits, unsigned count,
+                              unsigned widest)
 {
 	for (unsigned index = 0; index < count; index++) {
 		const unsigned low = below(numbers, bits);
@@ -54,10 +55,11 @@ static inline void add_cells(struct bench *bench, struct numbers *numbers, uint3
 {
 	const struct plan *plan = &bench->plan;
 	const uint32_t states = (uint32_t)1 << plan->machine.state_bits;
-	uint64_t sets[BENCH_SIGNALS];
+	uint64_t sets[BENCH_SIGNALS] = {0};
 	uint32_t hidden[STATES];
 	for (size_t index = 0; index < plan->signal_count; index++) {
-		sets[index] = plan->signals[index].auto_codes ? below(numbers, 1u << 30) | (uint64_t)below(numbers, 1u << 30) << 30 : 0;
+		if (plan->signals[index].auto_codes)
+			sets[index] = below(numbers, 1u << 30) | (uint64_t)below(numbers, 1u << 30) << 30;
 		for (size_t code = 0; code < plan->signals[index].code_count; code++)
 			sets[index] |= (uint64_t)1 << plan->signals[index].codes[code];
 	}

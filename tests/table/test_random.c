@@ -108,6 +108,40 @@ static bool can_solve_some(struct machine_case *machine, int start)
 	return false;
 }
 
+// All jumps of all fields with signals, where fields that share bits count as one.
+static uint32_t count_all_jumps(const struct bench *bench, const struct table *table)
+{
+	const struct plan *plan = &bench->plan;
+	uint32_t jumps = 0, counted = 0;
+	for (size_t index = 0; index < plan->signal_count; index++) {
+		struct field joined = plan->machine.fields[plan->signals[index].field];
+		// Fields are runs of bits, so those that share some make a run, and growing it settles in a round for each.
+		for (size_t other = 0; other < plan->signal_count * plan->signal_count; other++) {
+			const struct field *field = &plan->machine.fields[plan->signals[other % plan->signal_count].field];
+			if ((field_mask(&joined) & field_mask(field)) == 0)
+				continue;
+			joined.high = field->high > joined.high ? field->high : joined.high;
+			joined.low = field->low < joined.low ? field->low : joined.low;
+		}
+		if ((field_mask(&joined) & counted) == 0)
+			jumps += count_jumps(table, &joined);
+		counted |= field_mask(&joined);
+	}
+	return jumps;
+}
+
+static void assert_quieter_than_zero(struct bench *bench)
+{
+	struct diagnostics *diagnostics = diagnostics_create();
+	assert_non_null(diagnostics);
+	bench_start(bench, 0);
+	struct table *zero = table_create(&bench->timeline, diagnostics);
+	assert_non_null(zero);
+	assert_true(count_all_jumps(bench, bench->table) < count_all_jumps(bench, zero));
+	table_destroy(zero);
+	diagnostics_destroy(diagnostics);
+}
+
 // Compares the table with the plain search; true if there is a table.
 static bool check_machine(struct bench *bench)
 {
@@ -119,9 +153,9 @@ static bool check_machine(struct bench *bench)
 		return false;
 	assert_valid(bench);
 	assert_int_equal(table->period, machine.period);
-	// A cleared latch holds 0.
-	if (!has_start)
-		assert_int_equal(table->state_of_cell[0] == 0, can_solve(&machine, 0));
+	// A cleared latch holds 0; only quieter edges excuse another state.
+	if (!has_start && table->state_of_cell[0] != 0 && can_solve(&machine, 0))
+		assert_quieter_than_zero(bench);
 	return true;
 }
 

@@ -94,9 +94,10 @@ static void test_none(void **state)
 	bench_region(bench, "d", 1, SIGNAL(lamp) | SIGNAL(bell));
 	assert_null(bench_table(bench));
 	assert_string_equal(text_string(&bench->printed),
-	                    "board.yaml:11:1: error: codes: auto: there are no codes of field \"right\" for \"bell\" with which "
-	                    "every cell has a state of its own; the first cell without one is line 0 (\"quay\"), cell 1, region "
-	                    "\"a\" [codes-short]\n"
+	                    "board.yaml:11:1: error: codes: auto: there are no codes of field \"right\" for \"bell\" with "
+	                    "which every cell has a state of its own; the first cell without "
+	                    "one is line 0 (\"quay\"), cell 1, "
+	                    "region \"a\" [codes-short]\n"
 	                    "  hint: list the codes, or give the field or the state another bit\n");
 	bench_destroy(bench);
 }
@@ -119,9 +120,10 @@ static void test_gives_up(void **state)
 	bench_hold(bench, at, 1, 0);
 	assert_null(bench_table(bench));
 	assert_string_equal(text_string(&bench->printed),
-	                    "board.yaml:10:1: error: codes: auto: found no codes of field \"select\" for \"lamp\" with which "
-	                    "every cell has a state of its own; the first cell without one is line 0 (\"quay\"), cell 66, region "
-	                    "\"b\" [codes-short]\n"
+	                    "board.yaml:10:1: error: codes: auto: found no codes of field \"select\" for \"lamp\" with "
+	                    "which every cell has a state of its own; the first cell without "
+	                    "one is line 0 (\"quay\"), cell 66, "
+	                    "region \"b\" [codes-short]\n"
 	                    "  hint: list the codes, or give the field or the state another bit\n");
 	bench_destroy(bench);
 }
