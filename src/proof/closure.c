@@ -2,6 +2,7 @@
 #include <inttypes.h>
 
 #include "base/arena.h"
+#include "proof/exchange.h"
 #include "proof/jump.h"
 
 // `bytes`: the bytes that hold the next state, in words: " (…)", or nothing.
@@ -164,6 +165,8 @@ static bool loop_fails(struct trial *trial, const struct line_fault *line, uint3
 		found = line->found;
 	if (wrong_before < shown_at && (line_first || !certain))
 		blame_other_proof(trial, PROOF_SIGNALS, &found);
+	if (!certain && !find_exchange(trial, &found.hint))
+		return false;
 	return proof_fails(trial, PROOF_CLOSURE, found);
 }
 
@@ -171,6 +174,8 @@ static bool line_fails(struct trial *trial, struct line_fault *line, uint32_t wr
 {
 	if (wrong_before < line->shown_at)
 		blame_other_proof(trial, PROOF_SIGNALS, &line->found);
+	if (!find_exchange(trial, &line->found.hint))
+		return false;
 	return proof_fails(trial, PROOF_CLOSURE, line->found);
 }
 

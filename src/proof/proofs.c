@@ -86,6 +86,8 @@ static bool trial_prove(struct trial *trial, bool has_start, uint32_t start)
 	if (!has_start && !frame_find(trial->arena, trial->timeline, &trial->wiring, trial->machine, trial->expected,
 	                              trial->decoders, &start))
 		return false;
+	trial->has_start = has_start;
+	trial->start = start;
 	if (!lap_run(trial, start) || !lap_finish(trial))
 		return false;
 	for (unsigned kind = 0; kind < PROOF_COUNT; kind++)

@@ -71,24 +71,24 @@ static const char *held_words(const struct trial *trial, uint32_t cell, uint32_t
 	                    state, state & trial->timeline->hold_mask[cell], held);
 }
 
-static uint32_t wrong_held_bits(const struct trial *trial, uint32_t cell)
+uint32_t wrong_held_bits(const struct trial *trial, uint32_t cell, uint32_t state)
 {
 	const struct timeline *timeline = trial->timeline;
-	return timeline->hold_mask == NULL ? 0 : (trial->lap.states[cell] ^ timeline->hold_value[cell]) & timeline->hold_mask[cell];
+	return timeline->hold_mask == NULL ? 0 : (state ^ timeline->hold_value[cell]) & timeline->hold_mask[cell];
 }
 
 // The first cell with a wrong held bit; UINT32_MAX if there is none.
 static uint32_t first_wrong_held(const struct trial *trial)
 {
 	for (uint32_t cell = 0; cell < trial->timeline->cell_count; cell++)
-		if (wrong_held_bits(trial, cell) != 0)
+		if (wrong_held_bits(trial, cell, trial->lap.states[cell]) != 0)
 			return cell;
 	return UINT32_MAX;
 }
 
 static struct counterexample held_fault(const struct trial *trial, uint32_t cell)
 {
-	uint32_t wrong = wrong_held_bits(trial, cell);
+	uint32_t wrong = wrong_held_bits(trial, cell, trial->lap.states[cell]);
 	struct counterexample found = blame_next(trial, cell_before(trial, cell), wrong);
 	found.cell = cell;
 	found.what = held_words(trial, cell, wrong);

@@ -40,6 +40,8 @@ struct trial {
 	struct wiring wiring;
 	const struct machine *machine;
 	uint32_t bank;
+	bool has_start;               // the plan's; otherwise `start` was found in the images
+	uint32_t start;
 	struct lap lap;
 	uint32_t departed_cell;       // found by closure: the first cell that the states should not have come to; UINT32_MAX if there is none
 	struct ways *ways;            // found by power-up for upset; NULL if the lap is not closed
@@ -85,6 +87,8 @@ void blame_other_proof(const struct trial *trial, enum proof_kind kind, struct c
 // From which cell on pins are judged, 0 or 1: the latched pins of cell 0 come from where the lap ended, so that they are judged last if it did not
 // end well. Cannot fail.
 uint32_t first_judged_cell(const struct trial *trial);
+// The held bits of a cell that a state has wrong. Cannot fail.
+uint32_t wrong_held_bits(const struct trial *trial, uint32_t cell, uint32_t state);
 // The first cell of the lap, from there on, at which a pin or a held bit is wrong; UINT32_MAX if there is none. Cannot fail.
 uint32_t signals_first_cell(const struct trial *trial);
 // The bytes of all chips that carry the next state (or clear) of a state, in words: "U7 0x01A3: 0x5B and U8 0x01A3: 0x00".
