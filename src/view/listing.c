@@ -49,10 +49,27 @@ static void put_chips(struct text *out, const struct plan *plan, const struct im
 	text_put(out, "\n");
 }
 
-static void put_heading(struct text *out, const struct plan *plan)
+// Whether a signal is decoded from a field.
+static bool is_decoded(const struct plan *plan, size_t field)
 {
-	text_printf(out, "# %s: every row of the frame\n# line type, line, cell, region, state, word (%s", plan->name,
-	            plan->machine.advance == ADVANCE_TABLE ? "next state" : "clear");
+	for (size_t signal = 0; signal < plan->signal_count; signal++)
+		if (plan->signals[signal].origin == FROM_FIELD && plan->signals[signal].field == field)
+			return true;
+	return false;
+}
+
+// Puts a state, and the code of each decoded field in it.
+static void put_state(struct text *out, const struct plan *plan, uint32_t state)
+{
+	text_printf(out, "%0*X", (int)(plan->machine.state_bits + 3) / 4, (unsigned)state);
+	for (size_t field = 0; field < plan->machine.field_count; field++)
+		if (is_decoded(plan, field))
+			text_printf(out, " %u", (unsigned)field_value(&plan->machine.fields[field], state));
+}
+
+static void put_word_heading(struct text *out, const struct plan *plan)
+{
+	text_printf(out, ", word (%s", plan->machine.advance == ADVANCE_TABLE ? "next state" : "clear");
 	bool first = true;
 	for (size_t signal = 0; signal < plan->signal_count; signal++) {
 		if (!signal_is_data(&plan->signals[signal]))
@@ -60,10 +77,27 @@ static void put_heading(struct text *out, const struct plan *plan)
 		text_printf(out, "%s %s", first ? ", then the levels of" : "", plan->signals[signal].name);
 		first = false;
 	}
-	text_put(out, "), then address:byte in");
-	for (size_t chip = 0; chip < plan->chip_count; chip++)
+	text_put(out, "), then ");
+}
+
+static void put_heading(struct text *out, const struct plan *plan)
+{
+	text_printf(out, "# %s: every row of the frame\n# line type, line, cell, region, state", plan->name);
+	for (size_t field = 0; field < plan->machine.field_count; field++)
+		if (is_decoded(plan, field))
+			text_printf(out, ", field %s", plan->machine.fields[field].name);
+	put_word_heading(out, plan);
+	for (size_t chip = 0; chip < plan->chip_count; chip++) {
+		const bool wide = plan->chips[chip].part->data_pins > 8;
+		if (chip == 0 || wide != (plan->chips[chip - 1].part->data_pins > 8))
+			text_printf(out, "%saddress:%s in", chip == 0 ? "" : ", ", wide ? "word" : "byte");
 		text_printf(out, " %s", plan->chips[chip].label);
+	}
 	text_put(out, "\n");
+	if (wiring_of(plan).data_signals != 0)
+		text_printf(out, "# levels are electrical, 1 is high; %s\n", plan->machine.outputs == OUTPUTS_REGISTERED
+		            ? "they are latched at the end of a cell: those in a row are the pins of the next cell"
+		            : "outputs are direct: those in a row are the pins of its own cell");
 }
 
 // The first state that is not on the frame, whose row stands for all spare rows; 2^state_bits if there is none.
@@ -90,8 +124,8 @@ static void put_spare(struct text *out, const struct table *table, const struct 
 	free(used);
 	if (spare == states)
 		return;
-	text_printf(out, "# the %u states that are not on the frame have this row:\nspare %0*X", (unsigned)(states - table->period),
-	            (int)(plan->machine.state_bits + 3) / 4, (unsigned)spare);
+	text_printf(out, "# the %u states that are not on the frame have this row:\nspare ", (unsigned)(states - table->period));
+	put_state(out, plan, spare);
 	put_row(out, table, &table->spare);
 	put_chips(out, plan, images, spare);
 }
@@ -107,9 +141,9 @@ void view_listing(struct text *out, const struct table *table, const struct imag
 		for (uint32_t cell = 0; cell < type->cells; cell++) {
 			const uint32_t at = (line->first_cell + cell) % table->period;
 			const struct row row = table_row(table, at);
-			text_printf(out, "\"%s\" %u %u \"%s\" %0*X", plan->lines[line->type].name, (unsigned)number, (unsigned)cell,
-			            plan->lines[line->type].regions[type->region_of_cell[cell]].name, (int)(plan->machine.state_bits + 3) / 4,
-			            (unsigned)table->state_of_cell[at]);
+			text_printf(out, "\"%s\" %u %u \"%s\" ", plan->lines[line->type].name, (unsigned)number, (unsigned)cell,
+			            plan->lines[line->type].regions[type->region_of_cell[cell]].name);
+			put_state(out, plan, table->state_of_cell[at]);
 			put_row(out, table, &row);
 			put_chips(out, plan, images, table->state_of_cell[at]);
 		}

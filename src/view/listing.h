@@ -6,7 +6,8 @@ struct image;
 struct table;
 struct text;
 
-// Puts a line for each cell of the frame: line number and type, cell, region, address (state), word, each chip's byte; then the spare row.
+// Puts a line for each cell of the frame: line type and number, cell, region, state, the codes in it of the fields that signals are decoded from, word,
+// each chip's address and byte (or 16-bit word); then the spare row. Lines that begin with # say what is what.
 void view_listing(struct text *out, const struct table *table, const struct image *images);
 
 #endif
