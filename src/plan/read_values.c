@@ -28,7 +28,8 @@ bool expect_kind(struct reader *reader, const struct node *node, enum node_kind 
 	const bool absent = node->kind == NODE_SCALAR && node->length == 0;
 	diagnose(reader->diagnostics, RULE_NODE_KIND, node->place, "%s: wanted %s, found %s", what, kind_words[kind],
 	         absent ? "nothing" : kind_words[node->kind]);
-	if (kind == NODE_MAPPING && node->kind == NODE_SCALAR && strchr(node->text, ':') != NULL)
+	const char *colon = node->kind == NODE_SCALAR ? strchr(node->text, ':') : NULL;
+	if (kind == NODE_MAPPING && colon != NULL && colon[1] != ' ' && colon[1] != '\0')
 		diagnose_hint(reader->diagnostics, "put a space after ':'");
 	else if (kind == NODE_MAPPING)
 		diagnose_hint(reader->diagnostics, "a mapping is { key: value, ... }, or key: value on lines of their own");
