@@ -29,18 +29,17 @@ static bool levels_agree(const struct assignment *assignment, uint32_t cell, uin
 	       assignment->codes->levels[code_of_state(assignment->codes, state)];
 }
 
-static bool place_start(struct assignment *assignment, struct faults *faults)
+static void place_start(struct assignment *assignment, struct faults *faults)
 {
 	const struct constraints *constraints = assignment->constraints;
 	const uint32_t start = assignment->start;
 	if ((start & cell_mask(constraints, 0)) == cell_value(constraints, 0) && levels_agree(assignment, 0, start)) {
 		assignment_place(assignment, 0, start);
-		return true;
+		return;
 	}
 	struct fault fault = fault_at(RULE_START_CONFLICT, 0);
 	fault.state = start;
 	faults_add(faults, fault);
-	return false;
 }
 
 // Gives a cell the only state that it may have.
@@ -142,8 +141,8 @@ bool assignment_begin(struct assignment *assignment, struct faults *faults)
 {
 	const size_t before = faults->count;
 	clear(assignment);
-	if (assignment->start_fixed && !place_start(assignment, faults))
-		return false;
+	if (assignment->start_fixed)
+		place_start(assignment, faults);
 	place_fixed(assignment, faults);
 	place_singles(assignment, faults);
 	if (faults->count == before)

@@ -157,6 +157,14 @@ static bool is_beyond_codes(const struct solver *solver, const struct fault *fau
 	return fault->rule == RULE_START_CONFLICT;
 }
 
+static bool has_fault_at(const struct faults *faults, uint32_t cell)
+{
+	for (size_t index = 0; index < faults->count; index++)
+		if (faults->list[index].cell == cell || faults->list[index].other == cell)
+			return true;
+	return false;
+}
+
 // Drops the faults that a choice of codes may mend, if there are others, which it returns.
 static size_t keep_beyond_codes(const struct solver *solver, struct faults *faults)
 {
@@ -167,6 +175,21 @@ static size_t keep_beyond_codes(const struct solver *solver, struct faults *faul
 	if (kept > 0)
 		faults->count = kept;
 	return kept;
+}
+
+// Adds the conflicts that codes chosen otherwise would leave too, of cells that have no fault yet.
+static void add_listed_faults(struct solver *solver, struct faults *faults)
+{
+	struct faults more = {.count = 0};
+	try_codes(solver, false, &more);
+	for (size_t index = 0; index < more.count; index++) {
+		const struct fault *fault = &more.list[index];
+		const bool listed = fault->rule == RULE_START_CONFLICT ||
+		                    (fault->rule == RULE_CODE_CONFLICT && !listed_codes_allow(solver, fault->cell));
+		if (listed && !has_fault_at(faults, fault->cell))
+			faults_add(faults, *fault);
+	}
+	faults->memory_out |= more.memory_out;
 }
 
 // Tries codes, with more of them for the cells at fault, as long as that is possible.
@@ -188,8 +211,10 @@ static enum repair try_repairs(struct solver *solver, struct fault *shortage, st
 static bool try_automatic(struct solver *solver, struct faults *faults)
 {
 	struct fault shortage = fault_at(RULE_CODES_SHORT, NO_CELL);
-	if (!label_fields(solver, faults))
+	if (!label_fields(solver, faults)) {
+		add_listed_faults(solver, faults);
 		return false;
+	}
 	const enum repair repair = try_repairs(solver, &shortage, faults);
 	if (repair == REPAIR_DONE || repair == REPAIR_BEYOND)
 		return repair == REPAIR_DONE;

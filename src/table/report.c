@@ -205,6 +205,42 @@ static void also_codes(const struct reporter *reporter, size_t field)
 	}
 }
 
+static bool same_place(struct place left, struct place right)
+{
+	return left.source == right.source && left.line == right.line && left.column == right.column;
+}
+
+static bool stands_before(struct place left, struct place right)
+{
+	return left.line < right.line || (left.line == right.line && left.column < right.column);
+}
+
+// The region in which a hold is written: of those that have it, the nearest before it. NULL if the place is no hold's.
+static const struct region *region_of_hold(const struct reporter *reporter, struct place place)
+{
+	const struct region *nearest = NULL;
+	for (size_t line = 0; line < reporter->plan->line_count; line++)
+		for (size_t index = 0; index < reporter->plan->lines[line].region_count; index++) {
+			const struct region *region = &reporter->plan->lines[line].regions[index];
+			bool has = false;
+			for (size_t hold = 0; hold < region->hold_count; hold++)
+				has |= same_place(region->holds[hold].place, place);
+			if (has && stands_before(region->place, place) &&
+			    (nearest == NULL || stands_before(nearest->place, region->place)))
+				nearest = region;
+		}
+	return nearest;
+}
+
+// Points at the change of a region that asserts other signals than the one in which its hold is written.
+static void also_change(const struct reporter *reporter, uint32_t cell, struct place hold)
+{
+	const struct region *region = timeline_region(reporter->timeline, cell);
+	const struct region *written = region_of_hold(reporter, hold);
+	if (written != NULL && !same_place(written->place, region->place) && written->assert_mask != region->assert_mask)
+		diagnose_also(reporter->diagnostics, region->place, "what region \"%s\" asserts is changed here", region->name);
+}
+
 // Two cells hold one code. The start, too, holds one.
 static void report_code_twice(const struct reporter *reporter, const struct fault *fault)
 {
@@ -214,8 +250,11 @@ static void report_code_twice(const struct reporter *reporter, const struct faul
 	         "%s, and %s, are held to one code, %u, of field \"%s\", but differ in its signals, which have codes: auto",
 	         cell_words(reporter, fault->cell), cell_words(reporter, fault->other), fault->available,
 	         field_name(reporter, fault->field));
+	if (!start)
+		also_change(reporter, fault->cell, field_place(reporter, fault->cell, fault->field));
 	diagnose_also(reporter->diagnostics, field_place(reporter, fault->other, fault->field),
 	              "the second of the two is held here");
+	also_change(reporter, fault->other, field_place(reporter, fault->other, fault->field));
 }
 
 static void report_code_conflict(const struct reporter *reporter, const struct fault *fault)
@@ -233,6 +272,7 @@ static void report_code_conflict(const struct reporter *reporter, const struct f
 	diagnose(reporter->diagnostics, RULE_CODE_CONFLICT, field_place(reporter, fault->cell, field),
 	         "%s: %s no code%s for %s", cell_words(reporter, fault->cell), what, held ? " that the hold allows" : "",
 	         levels_words(reporter, field, asserted));
+	also_change(reporter, fault->cell, field_place(reporter, fault->cell, field));
 	also_codes(reporter, field);
 }
 
