@@ -1,4 +1,5 @@
-// Closure: every line takes its cells and ticks, and the frame returns to its first cell after exactly its cells and ticks.
+// Closure: every line takes its cells and ticks, and the frame returns to its first cell after exactly its cells and
+// ticks.
 #include <inttypes.h>
 
 #include "base/arena.h"
@@ -62,8 +63,8 @@ static const char *bytes_to_blame(const struct trial *trial, uint32_t state, boo
 	return healthy || bytes == NULL ? bytes : arena_format(trial->proofs->arena, " (%s)", bytes);
 }
 
-// Why the states are no loop that fits the frame. The words are NULL when memory is out. A pin or held bit that is wrong before says that the
-// machine went astray earlier, unseen: then the row where it shows is as it should be.
+// Why the states are no loop that fits the frame. The words are NULL when memory is out. A pin or held bit that is
+// wrong before says that the machine went astray earlier, unseen: then the row where it shows is as it should be.
 static struct counterexample loop_fault(const struct trial *trial, uint32_t wrong_before)
 {
 	const struct lap *lap = &trial->lap;
@@ -130,8 +131,8 @@ static bool find_wrong_line(const struct trial *trial, uint32_t *wrong)
 	return false;
 }
 
-// A line of the wrong length, and the cell at whose pins that shows; UINT32_MAX if there is none. The latched pins of cell 0 come from where the
-// lap ended, and say nothing if it did not end well.
+// A line of the wrong length, and the cell at whose pins that shows; UINT32_MAX if there is none. The latched pins of
+// cell 0 come from where the lap ended, and say nothing if it did not end well.
 struct line_fault {
 	struct counterexample found;
 	uint32_t shown_at;
@@ -150,8 +151,8 @@ static struct line_fault find_line_fault(const struct trial *trial)
 	return fault;
 }
 
-// The loop that does not fit, unless the wrong line shows first. What may follow from a pin or held bit that is wrong before is not blamed on a
-// byte, but a jump is certain.
+// The loop that does not fit, unless the wrong line shows first. What may follow from a pin or held bit that is wrong
+// before is not blamed on a byte, but a jump is certain.
 static bool loop_fails(struct trial *trial, const struct line_fault *line, uint32_t wrong_before)
 {
 	bool certain = false;

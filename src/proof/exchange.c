@@ -24,7 +24,8 @@ static bool many_wrong_cells(const struct trial *trial)
 	return wrong > FEW_CELLS;
 }
 
-// A lap up to the first fault in a held bit, a data pin or a known decoder; true if there is none and it ends where it began.
+// A lap up to the first fault in a held bit, a data pin or a known decoder; true if there is none and it ends where it
+// began.
 static bool passes(const struct trial *trial, uint32_t start)
 {
 	const uint32_t cells = trial->timeline->cell_count;

@@ -1,5 +1,6 @@
-// A jump: the machine leaves the frame's order because of a wrong next state. The faulty row itself looks innocent, and what goes wrong shows
-// cells later; but in a machine that closes, every state of the frame has one predecessor and no spare state has any.
+// A jump: the machine leaves the frame's order because of a wrong next state. The faulty row itself looks innocent, and
+// what goes wrong shows cells later; but in a machine that closes, every state of the frame has one predecessor and no
+// spare state has any.
 #include "proof/jump.h"
 
 #include <inttypes.h>
@@ -17,7 +18,8 @@ static uint8_t *count_predecessors(const struct trial *trial, const uint32_t *ne
 	return counts;
 }
 
-// The only state that leads on, and that nothing leads to: where the jump should have gone. False if there is no or more than one.
+// The only state that leads on, and that nothing leads to: where the jump should have gone. False if there is no or
+// more than one.
 static bool find_orphan(const struct trial *trial, const uint32_t *next, const uint8_t *counts, uint32_t *orphan)
 {
 	const size_t states = (size_t)1 << trial->wiring.state_bits;
@@ -59,8 +61,8 @@ static size_t count_leading_on(const struct trial *trial, const uint32_t *next)
 	return count;
 }
 
-// The first cell, before anything shows at the pins, whose successor has a second predecessor or is spare. Leaves *cell, where the states first
-// went wrong, if there is none.
+// The first cell, before anything shows at the pins, whose successor has a second predecessor or is spare. Leaves
+// *cell, where the states first went wrong, if there is none.
 static void find_departure(const struct search *search, uint32_t *cell)
 {
 	const struct lap *lap = &search->trial->lap;

@@ -110,15 +110,16 @@ uint32_t signals_first_cell(const struct trial *trial)
 	return pin_is_last || held_cell < pin_cell ? held_cell : pin_cell;
 }
 
-// Whether a fault shows the states of a machine that went astray before, rather than a wrong byte. A latched pin of the first cell off the way is
-// stored in the row that leads there.
+// Whether a fault shows the states of a machine that went astray before, rather than a wrong byte. A latched pin of the
+// first cell off the way is stored in the row that leads there.
 static bool is_astray(const struct trial *trial, uint32_t cell, const struct counterexample *found)
 {
 	const bool row_of_cell = found->signal != SIZE_MAX && trial->lap.states[cell] == found->state && trial->wiring.outputs == OUTPUTS_DIRECT;
 	return cell > trial->departed_cell || (cell == trial->departed_cell && row_of_cell);
 }
 
-// The fault of the first cell that has one, or (with cell UINT32_MAX) of the latched pins of cell 0, which are judged last.
+// The fault of the first cell that has one, or (with cell UINT32_MAX) of the latched pins of cell 0, which are judged
+// last.
 static struct counterexample first_fault(const struct trial *trial, uint32_t cell)
 {
 	if (cell == UINT32_MAX) {

@@ -21,8 +21,8 @@ struct lap {
 	int64_t shortest_ticks;   // of a cell
 };
 
-// Sums over the upsets of all trials so far that regained the frame. They stay below 2^24 states × 24 bits × 2^24 cells ×
-// 2^8 banks < 2^61.
+// Sums over the upsets of all trials so far that regained the frame. They stay below 2^24 states × 24 bits × 2^24 cells
+// × 2^8 banks < 2^61.
 struct upset_sums {
 	uint64_t regained;
 	uint64_t cells;
@@ -71,8 +71,8 @@ bool prove_glitches(struct trial *trial);
 bool prove_speed(struct trial *trial);
 bool prove_sweep(struct trial *trial);
 
-// A proof fails: its verdict, and the counterexample if it is the first. `found` must have its words; NULL words mean that
-// memory is out, and give false.
+// A proof fails: its verdict, and the counterexample if it is the first. `found` must have its words; NULL words mean
+// that memory is out, and give false.
 bool proof_fails(struct trial *trial, enum proof_kind kind, struct counterexample found);
 // A proof that cannot be judged, for a reason in words, fails. Cannot fail.
 void proof_not_judged(struct trial *trial, enum proof_kind kind, const char *reason);
@@ -81,18 +81,19 @@ void proof_not_judged(struct trial *trial, enum proof_kind kind, const char *rea
 // successor finds itself. They name the state whose row was read and the byte that stands there. Cannot fail.
 struct counterexample blame_pin(const struct trial *trial, uint32_t cell, size_t signal);
 struct counterexample blame_next(const struct trial *trial, uint32_t cell, uint32_t wrong_bits);
-// Turns a counterexample whose words are made into one that may only follow from an earlier fault that another proof shows: it names no row and no byte.
-// Its words are NULL when memory is out.
+// Turns a counterexample whose words are made into one that may only follow from an earlier fault that another proof
+// shows: it names no row and no byte. Its words are NULL when memory is out.
 void blame_other_proof(const struct trial *trial, enum proof_kind kind, struct counterexample *found);
-// From which cell on pins are judged, 0 or 1: the latched pins of cell 0 come from where the lap ended, so that they are judged last if it did not
-// end well. Cannot fail.
+// From which cell on pins are judged, 0 or 1: the latched pins of cell 0 come from where the lap ended, so that they
+// are judged last if it did not end well. Cannot fail.
 uint32_t first_judged_cell(const struct trial *trial);
 // The held bits of a cell that a state has wrong. Cannot fail.
 uint32_t wrong_held_bits(const struct trial *trial, uint32_t cell, uint32_t state);
-// The first cell of the lap, from there on, at which a pin or a held bit is wrong; UINT32_MAX if there is none. Cannot fail.
+// The first cell of the lap, from there on, at which a pin or a held bit is wrong; UINT32_MAX if there is none. Cannot
+// fail.
 uint32_t signals_first_cell(const struct trial *trial);
-// The bytes of all chips that carry the next state (or clear) of a state, in words: "U7 0x01A3: 0x5B and U8 0x01A3: 0x00".
-// In the proofs' arena; NULL when memory is out.
+// The bytes of all chips that carry the next state (or clear) of a state, in words: "U7 0x01A3: 0x5B and U8 0x01A3:
+// 0x00". In the proofs' arena; NULL when memory is out.
 const char *next_bytes(const struct trial *trial, uint32_t state);
 // The chip with the longest access time; of equals, the first. Cannot fail.
 size_t slowest_chip(const struct wiring *wiring);

@@ -102,8 +102,8 @@ static void jump_ahead(void **test)
 	by_hand_destroy(hand);
 }
 
-// Row 1 has blank wrong, which shows in cell 2. Row 2 leads home, and so does row 3, so that nothing tells where the machine went astray: the pin
-// comes first, and closure blames no byte.
+// Row 1 has blank wrong, which shows in cell 2. Row 2 leads home, and so does row 3, so that nothing tells where the
+// machine went astray: the pin comes first, and closure blames no byte.
 static void wrong_pin_before(void **test)
 {
 	(void)test;
@@ -185,7 +185,8 @@ static void back_elsewhere(void **test)
 	by_hand_destroy(hand);
 }
 
-// Row 4 leads to the spare state 5, which leads home: six cells. Next bit 0 and 2 are wrong, bit 0 is on the chip named.
+// Row 4 leads to the spare state 5, which leads home: six cells. Next bit 0 and 2 are wrong, bit 0 is on the chip
+// named.
 static void back_too_late(void **test)
 {
 	(void)test;

@@ -77,7 +77,8 @@ static void exchanged_and_wrong(void **test)
 	by_hand_destroy(hand);
 }
 
-// Codes are read out of the images: the gate is asserted in cells 1 and 2 of four, states 0, 2, 6, 4, and hangs on the upper two bits.
+// Codes are read out of the images: the gate is asserted in cells 1 and 2 of four, states 0, 2, 6, 4, and hangs on the
+// upper two bits.
 static void exchanged_codes(void **test)
 {
 	(void)test;
@@ -101,7 +102,8 @@ static void exchanged_codes(void **test)
 	by_hand_destroy(hand);
 }
 
-// Twelve cells with sync in every other one. In the images it is in the others, and they have eleven cells: nine and more are wrong.
+// Twelve cells with sync in every other one. In the images it is in the others, and they have eleven cells: nine and
+// more are wrong.
 static void images_of_another_plan(void **test)
 {
 	(void)test;

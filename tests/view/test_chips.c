@@ -33,7 +33,8 @@ static void fill_board(struct board *board)
 	board->plan = (struct plan){.signals = board->signals, .signal_count = 1, .chips = &board->chip, .chip_count = 1};
 }
 
-// Pins are not parted from their wires at a line's end: the first line has 95 characters; two spaces and "A8" would fit, "A8 high" does not.
+// Pins are not parted from their wires at a line's end: the first line has 95 characters; two spaces and "A8" would
+// fit, "A8 high" does not.
 static void every_kind_of_wire(void **state)
 {
 	(void)state;

@@ -11,8 +11,8 @@
 #include "table/table.h"
 #include "view/listing.h"
 
-// Two bits of state. Sync (active low) is asserted in cell 0, the gate decoded from bit 1, which is the field "top", in cell 1. U1 has 8 data
-// pins and U2 16; next is on U1 D0 and D1, sync on U2 D0. The bytes are any.
+// Two bits of state. Sync (active low) is asserted in cell 0, the gate decoded from bit 1, which is the field "top", in
+// cell 1. U1 has 8 data pins and U2 16; next is on U1 D0 and D1, sync on U2 D0. The bytes are any.
 struct bench {
 	struct part narrow, wide;
 	struct chip chips[2];
