@@ -26,17 +26,17 @@ holds 'the program is there' test -x "$folder/build/scanlatch"
 holds 'the library is there' test -f "$folder/build/libscanlatch.a"
 holds 'a second make compiles nothing' build
 same 'a second make is silent' '' "$(grep -v "^make.*Nothing to be done for 'all'" "$folder/log")"
-holds 'make install installs' build install DESTDIR="$folder/root" PREFIX=/opt/bench
+holds 'make install installs' build install DESTDIR="$folder/system" PREFIX=/opt/bench
 holds 'no package was asked for' test ! -e "$folder/asked"
 
-root=$folder/root/opt/bench
+root=$folder/system/opt/bench
 same 'what is installed' "./opt/bench/bin/scanlatch
 ./opt/bench/include/scanlatch/scanlatch.h
 ./opt/bench/lib/libscanlatch.a
 ./opt/bench/lib/pkgconfig/scanlatch.pc
 ./opt/bench/share/bash-completion/completions/scanlatch
 $(for file in LICENSE README.md plans/README.md plans/*.yaml; do echo "./opt/bench/share/doc/scanlatch/$file"; done)
-./opt/bench/share/man/man1/scanlatch.1" "$(cd "$folder/root" && find . -type f | LC_ALL=C sort)"
+./opt/bench/share/man/man1/scanlatch.1" "$(cd "$folder/system" && find . -type f | LC_ALL=C sort)"
 
 holds 'the installed program runs' "$root/bin/scanlatch" --version
 same 'the installed completion loads' 'complete -F _scanlatch scanlatch' \
@@ -44,7 +44,7 @@ same 'the installed completion loads' 'complete -F _scanlatch scanlatch' \
 
 # pkg-config puts the root before the folders that the file names.
 flags() {
-	PKG_CONFIG_SYSROOT_DIR=$folder/root PKG_CONFIG_PATH=$root/lib/pkgconfig pkg-config "$@" scanlatch
+	PKG_CONFIG_SYSROOT_DIR=$folder/system PKG_CONFIG_PATH=$root/lib/pkgconfig pkg-config "$@" scanlatch
 }
 
 cat >"$folder/client.c" <<'END'
