@@ -46,6 +46,11 @@ static void auto_takes_the_fewest_leftmost(void **state)
 		assert_int_equal(laid.timeline->asserted[cell], cell == 2 ? LATE : 0);
 	assert_int_equal(laid.timeline->types[0].auto_stretched, 1);
 	release(&laid);
+	// Two cells that are stretched by name already are none that may be: 108 ticks stay 108.
+	laid = lay(clock, "  a: { regions: [ { region: p, cells: 2, assert: [late], stretch: auto }, { region: q, cells: 8 } ] }\n",
+	           "  - { repeat: 1, line: a }\n");
+	assert_refused(&laid, RULE_PHASE_UNREACHABLE);
+	release(&laid);
 	laid = lay(clock, "  a: { regions: [ { region: p, cells: 8, stretch: auto } ] }\n", "  - { repeat: 1, line: a }\n");
 	assert_laid(&laid);
 	assert_int_equal(laid.timeline->types[0].auto_stretched, 0);
