@@ -90,6 +90,10 @@ bool scanlatch_images_read_file(scanlatch_images *images, const char *label, con
 /* Reads every chip's NAME.LABEL.bin and NAME.LABEL.hex, whichever are there, from a folder. False after adding an error. */
 bool scanlatch_images_read_folder(scanlatch_images *images, const char *folder, scanlatch_messages *messages);
 
+/* Tells images that were read from what `made` images became where the frame of those begins. It only spares the proofs a search when the plan has no
+ * start: what begins there is proved all the same. Cannot fail. */
+void scanlatch_images_begin_as(scanlatch_images *images, const scanlatch_images *made);
+
 /* True if every chip has its bytes; otherwise adds an error for each that has not. */
 bool scanlatch_images_complete(const scanlatch_images *images, scanlatch_messages *messages);
 

@@ -1,5 +1,6 @@
 #include <getopt.h>
 #include <jansson.h>
+#include <signal.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -8,6 +9,7 @@
 #include "base/arena.h"
 #include "base/file.h"
 #include "command/command.h"
+#include "view/figures.h"
 
 static const char help[] =
 	"Usage: scanlatch build [options] PLAN... -o DIR\n"
@@ -56,6 +58,7 @@ struct job {
 	scanlatch_images *made;    // by the planner
 	scanlatch_images *proved;  // read back from the bytes of the files
 	scanlatch_proofs *proofs;
+	char *report, *missed;     // of the proofs: made before anything is written, so that lack of memory writes nothing
 	bool failed;               // a proof that counts failed
 	size_t first_file, file_count; // in the build's files
 };
@@ -146,9 +149,14 @@ static int make_images(struct build *build, struct job *job, const char *path)
 		return EXIT_SYSTEM;
 	if (!read_back(build, job))
 		return EXIT_BAD;
+	scanlatch_images_begin_as(job->proved, job->made);
 	progress_begin(&build->progress, "proving");
 	job->proofs = scanlatch_prove(job->proved);
 	if (job->proofs == NULL || !add_report_files(build, job))
+		return EXIT_SYSTEM;
+	job->report = scanlatch_proofs_text(job->proofs, colour_on(build->options->common.colour, STDOUT_FILENO));
+	job->missed = scanlatch_proofs_missed(job->proofs);
+	if (job->report == NULL || job->missed == NULL)
 		return EXIT_SYSTEM;
 	job->failed = scanlatch_proofs_failed(job->proofs, build->options->common.strict);
 	job->file_count = build->file_count - job->first_file;
@@ -199,44 +207,53 @@ static void report_write_failure(const struct write_failure *failure)
 	        begun ? "files before it may be new already" : "nothing was written");
 }
 
-// What the files came to, last, so that it is what a reader sees first.
-static void print_outcome(const struct job *job, bool written)
+// What the files came to, last, so that it is what a reader sees first. What the system refused is said by report_write_failure.
+static void print_outcome(const struct job *job, bool written, bool refused)
 {
 	const char *name = scanlatch_plan_name(job->plan);
-	char *advice = scanlatch_proofs_missed(job->proofs);
+	if (refused)
+		return;
 	if (job->failed)
 		printf("%s: %s\n", name, written ? "written though a proof failed, as asked by --unproven"
 		                                : "a proof failed: nothing was written (--unproven writes all the same)");
-	else if (written && advice != NULL && advice[0] != '\0')
-		printf("%s: written; advice missed: %s\n", name, advice);
-	scanlatch_free(advice);
+	else if (written && job->missed[0] != '\0')
+		printf("%s: written; advice missed: %s\n", name, job->missed);
 }
 
-static void print_text(const struct build *build, bool written)
+static void print_text(const struct build *build, bool written, bool refused)
 {
 	for (size_t index = 0; index < build->job_count; index++) {
 		const struct job *job = &build->jobs[index];
-		printf("%s%s\n", index == 0 ? "" : "\n", scanlatch_plan_name(job->plan));
-		print_string(scanlatch_proofs_text(job->proofs, colour_on(build->options->common.colour, STDOUT_FILENO)));
+		printf("%s%s\n%s", index == 0 ? "" : "\n", scanlatch_plan_name(job->plan), job->report);
 		for (size_t file = job->first_file; written && file < job->first_file + job->file_count; file++)
 			printf("%-5s %s/%s (%zu bytes)\n", build->files[file].kept ? "kept" : "wrote", build->options->directory,
 			       build->files[file].name, build->files[file].length);
-		print_outcome(job, written);
+		print_outcome(job, written, refused);
 	}
-	if (!written && build->job_count > 1)
+	if (!written && !refused && build->job_count > 1)
 		puts("\nnothing was written for any of the plans");
+}
+
+static json_t *file_json(const struct output_file *file)
+{
+	json_t *object = json_object();
+	json_put(&object, "name", json_string(file->name));
+	json_put(&object, "bytes", json_integer((json_int_t)file->length));
+	json_put(&object, "kept", json_boolean(file->kept));
+	return object;
 }
 
 static json_t *job_json(const struct build *build, const struct job *job, bool written)
 {
-	json_t *files = json_array();
+	json_t *document = json_object(), *files = json_array();
 	for (size_t file = job->first_file; written && file < job->first_file + job->file_count; file++)
-		json_array_append_new(files, json_pack("{s:s, s:I, s:b}", "name", build->files[file].name, "bytes",
-		                                       (json_int_t)build->files[file].length, "kept", (int)build->files[file].kept));
+		json_append(&files, file_json(&build->files[file]));
 	char *manifest = scanlatch_manifest(job->proofs, build->options->files);
-	json_t *document = json_pack("{s:s, s:b, s:b, s:o, s:o}", "name", scanlatch_plan_name(job->plan), "failed", (int)job->failed,
-	                             "written", (int)written, "files", files,
-	                             "manifest", manifest != NULL ? json_loads(manifest, 0, NULL) : NULL);
+	json_put(&document, "name", json_string(scanlatch_plan_name(job->plan)));
+	json_put(&document, "failed", json_boolean(job->failed));
+	json_put(&document, "written", json_boolean(written));
+	json_put(&document, "files", files);
+	json_put(&document, "manifest", manifest != NULL ? json_loads(manifest, 0, NULL) : NULL);
 	scanlatch_free(manifest);
 	return document;
 }
@@ -245,26 +262,39 @@ static int print_json(const struct build *build, bool written)
 {
 	json_t *document = build->job_count > 1 ? json_array() : job_json(build, &build->jobs[0], written);
 	for (size_t index = 0; build->job_count > 1 && index < build->job_count; index++)
-		json_array_append_new(document, job_json(build, &build->jobs[index], written));
-	if (document == NULL)
-		return memory_error();
-	json_dumpf(document, stdout, JSON_INDENT(2) | JSON_REAL_PRECISION(12));
-	puts("");
+		json_append(&document, job_json(build, &build->jobs[index], written));
+	char *string = json_text(document);
 	json_decref(document);
-	return EXIT_GOOD;
+	return print_string(string);
+}
+
+// Writes all files. A signal that would end the program waits until the temporaries are gone. False with *failure filled.
+static bool write_files(struct build *build, struct write_failure *failure)
+{
+	static const int ending[] = {SIGINT, SIGTERM, SIGHUP, SIGQUIT};
+	sigset_t waiting, before;
+	sigemptyset(&waiting);
+	for (size_t index = 0; index < sizeof ending / sizeof *ending; index++)
+		sigaddset(&waiting, ending[index]);
+	pthread_sigmask(SIG_BLOCK, &waiting, &before); // before the thread that shows progress, which inherits it
+	progress_begin(&build->progress, "writing");
+	const bool written = file_write_all(build->arena, build->options->directory, build->files, build->file_count, failure);
+	progress_end(&build->progress);
+	pthread_sigmask(SIG_SETMASK, &before, NULL);
+	return written;
 }
 
 // Everything is made and proved: writes what may be written, and reports.
-static int finish(const struct build *build)
+static int finish(struct build *build)
 {
 	const bool failed = any_failed(build), write = !failed || build->options->unproven;
 	struct write_failure failure;
-	const bool refused = write && !file_write_all(build->arena, build->options->directory, build->files, build->file_count, &failure);
+	const bool refused = write && !write_files(build, &failure);
 	int code = failed ? EXIT_FOUND : EXIT_GOOD;
 	if (build->options->common.json)
 		code = worse(code, print_json(build, write && !refused));
 	else
-		print_text(build, write && !refused);
+		print_text(build, write && !refused, refused);
 	if (!refused)
 		return code;
 	report_write_failure(&failure);
@@ -290,6 +320,8 @@ static int build_plans(const struct build_options *options, char **paths, size_t
 	for (size_t index = 0; index < build.file_count; index++)
 		scanlatch_free(build.owned[index]);
 	for (size_t index = 0; build.jobs != NULL && index < count; index++) {
+		scanlatch_free(build.jobs[index].report);
+		scanlatch_free(build.jobs[index].missed);
 		scanlatch_proofs_destroy(build.jobs[index].proofs);
 		scanlatch_images_destroy(build.jobs[index].proved);
 		scanlatch_images_destroy(build.jobs[index].made);

@@ -16,7 +16,10 @@ scanlatch_images *scanlatch_images_create(const scanlatch_plan *plan)
 		arena_destroy(arena);
 		return NULL;
 	}
-	*images = (scanlatch_images){.arena = arena, .plan = plan, .images = chips, .sources = sources};
+	const struct machine_plan *machine = &plan->plan->machine;
+	const bool counted = machine->advance == ADVANCE_COUNT;
+	*images = (scanlatch_images){.arena = arena, .plan = plan, .images = chips, .sources = sources,
+	                             .has_start = machine->has_start || counted, .start = counted ? 0 : machine->start};
 	return images;
 }
 
@@ -26,6 +29,14 @@ void scanlatch_images_destroy(scanlatch_images *images)
 		return;
 	table_destroy(images->table);
 	arena_destroy(images->arena);
+}
+
+void scanlatch_images_begin_as(scanlatch_images *images, const scanlatch_images *made)
+{
+	if (made->table == NULL)
+		return;
+	images->has_start = true;
+	images->start = made->table->state_of_cell[0];
 }
 
 static void report_memory(scanlatch_messages *messages)

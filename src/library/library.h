@@ -28,6 +28,8 @@ struct scanlatch_images {
 	const scanlatch_plan *plan;
 	struct table *table;       // NULL if the images were read
 	struct image *images;      // [chip_count]; bytes NULL where a chip was not read
+	bool has_start;            // it is known where the frame begins, by the plan or by the maker
+	uint32_t start;
 	const struct source **sources; // [chip_count]: the file that a chip was read from, NULL where there is none
 };
 

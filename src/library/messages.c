@@ -3,6 +3,7 @@
 
 #include "base/arena.h"
 #include "library/library.h"
+#include "view/figures.h"
 
 const char *scanlatch_version(void)
 {
@@ -25,17 +26,9 @@ char *take_string(struct text *text)
 
 char *take_json(json_t *document)
 {
-	if (document == NULL)
-		return NULL;
-	char *dump = json_dumps(document, JSON_INDENT(2) | JSON_REAL_PRECISION(12));
+	char *string = json_text(document);
 	json_decref(document);
-	struct text text = {0};
-	if (dump == NULL)
-		return NULL;
-	text_put(&text, dump);
-	text_put(&text, "\n");
-	free(dump);
-	return take_string(&text);
+	return string;
 }
 
 scanlatch_messages *scanlatch_messages_create(void)

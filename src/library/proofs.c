@@ -10,10 +10,8 @@ scanlatch_proofs *scanlatch_prove(const scanlatch_images *images)
 	scanlatch_proofs *proofs = malloc(sizeof *proofs);
 	if (proofs == NULL)
 		return NULL;
-	const struct machine_plan *machine = &images->plan->plan->machine;
-	const bool counted = machine->advance == ADVANCE_COUNT;
 	proofs->images = images;
-	proofs->proofs = proofs_run(images->plan->timeline, images->images, machine->has_start || counted, counted ? 0 : machine->start);
+	proofs->proofs = proofs_run(images->plan->timeline, images->images, images->has_start, images->start);
 	if (proofs->proofs != NULL)
 		return proofs;
 	free(proofs);

@@ -45,11 +45,15 @@ bool check_identifier(struct reader *reader, const struct node *node, const char
 }
 
 // True if a terminal shows the name as it stands: no control characters, and none that steer the direction of text.
-static bool is_shown_as_is(const struct node *node)
+// When memory is out that is reported, and the name is let pass.
+static bool is_shown_as_is(struct reader *reader, const struct node *node)
 {
 	struct text shown = {0};
 	excerpt_put_printable(node->text, node->length, &shown);
-	const bool same = shown.length == node->length && memcmp(text_string(&shown), node->text, node->length) == 0;
+	if (shown.failed)
+		diagnose(reader->diagnostics, RULE_OUT_OF_MEMORY, node->place, "memory is out");
+	const bool same = shown.failed ||
+	                  (shown.length == node->length && memcmp(text_string(&shown), node->text, node->length) == 0);
 	text_release(&shown);
 	return same;
 }
@@ -60,7 +64,7 @@ bool check_printable_name(struct reader *reader, const struct node *node, const 
 	size_t characters = 0;
 	for (size_t offset = 0; offset < node->length; offset += character_bytes(node->text + offset, node->length - offset))
 		characters++;
-	if (characters >= 1 && characters <= NAME_CHARACTERS && strpbrk(node->text, "\"'") == NULL && is_shown_as_is(node))
+	if (characters >= 1 && characters <= NAME_CHARACTERS && strpbrk(node->text, "\"'") == NULL && is_shown_as_is(reader, node))
 		return true;
 	diagnose(reader->diagnostics, RULE_BAD_NAME, node->place, "%s %s: wanted 1 to %d printable characters without quotes", what,
 	         quotation(quoted, node->text, node->length), NAME_CHARACTERS);

@@ -2,8 +2,9 @@
 
 #include "base/arena.h"
 
-// Held comparisons may take so many times the cells of frame and loop.
+// Held comparisons may take so many times the cells of frame and loop, and in any case so many cells: a second or so.
 #define BUDGET_LAPS 64u
+#define BUDGET_CELLS ((uint64_t)1 << 28)
 
 // What is seen of a decoder whose codes are not known: attempt * 2 + level, where the code came up last.
 struct unknown_decoder {
@@ -21,7 +22,8 @@ struct finder {
 	uint32_t *states;          // [length]: the loop
 	uint64_t *pins;            // [length]
 	uint32_t length;
-	uint32_t *border;          // [cells]: of the expected pins
+	uint32_t *border;          // [cells]: of the expected pins and the bits that are always held
+	uint32_t always_held;      // state bits that are held in every cell: they are matched like pins
 	bool anchored;             // some cell is held
 	uint32_t anchor;           // the cell whose held value is rarest in the loop
 	uint64_t budget;
@@ -85,9 +87,32 @@ static bool list_unknown(struct finder *finder, const struct decoders *decoders)
 	return finder->unknown != NULL;
 }
 
-static bool same_pins(const struct finder *finder, uint64_t left, uint64_t right)
+// Whether two cells of the frame want the same of known pins and of bits that are always held.
+static bool same_cells(const struct finder *finder, uint32_t left, uint32_t right)
 {
-	return ((left ^ right) & finder->compared) == 0;
+	const struct timeline *timeline = finder->timeline;
+	if (((finder->expected[left] ^ finder->expected[right]) & finder->compared) != 0)
+		return false;
+	return finder->always_held == 0 || ((timeline->hold_value[left] ^ timeline->hold_value[right]) & finder->always_held) == 0;
+}
+
+// Whether a place of the loop shows what a cell of the frame wants of them.
+static bool shows_cell(const struct finder *finder, uint32_t place, uint32_t cell)
+{
+	if (((finder->pins[place] ^ finder->expected[cell]) & finder->compared) != 0)
+		return false;
+	return finder->always_held == 0 ||
+	       ((finder->states[place] ^ finder->timeline->hold_value[cell]) & finder->always_held) == 0;
+}
+
+static void find_always_held(struct finder *finder)
+{
+	const struct timeline *timeline = finder->timeline;
+	if (timeline->hold_mask == NULL)
+		return;
+	finder->always_held = UINT32_MAX;
+	for (uint32_t cell = 0; cell < timeline->cell_count; cell++)
+		finder->always_held &= timeline->hold_mask[cell];
 }
 
 // border[i]: how many cells at the start of the frame agree with as many that end at cell i, less than all: the failure
@@ -100,9 +125,9 @@ static bool find_borders(struct finder *finder)
 		return false;
 	uint32_t length = 0;
 	for (uint32_t cell = 1; cell < cells; cell++) {
-		while (length > 0 && !same_pins(finder, finder->expected[cell], finder->expected[length]))
+		while (length > 0 && !same_cells(finder, cell, length))
 			length = finder->border[length - 1];
-		length += same_pins(finder, finder->expected[cell], finder->expected[length]);
+		length += same_cells(finder, cell, length);
 		finder->border[cell] = length;
 	}
 	return true;
@@ -205,13 +230,12 @@ static void match_turns(struct finder *finder)
 	const uint64_t end = (uint64_t)finder->length + cells - 1;
 	uint32_t matched = 0, place = 0;
 	for (uint64_t index = 0; index < end; index++) {
-		uint64_t pins = finder->pins[place];
-		place = place + 1 == finder->length ? 0 : place + 1;
 		if (matched == cells)
 			matched = finder->border[cells - 1];
-		while (matched > 0 && !same_pins(finder, pins, finder->expected[matched]))
+		while (matched > 0 && !shows_cell(finder, place, matched))
 			matched = finder->border[matched - 1];
-		matched += same_pins(finder, pins, finder->expected[matched]);
+		matched += shows_cell(finder, place, matched);
+		place = place + 1 == finder->length ? 0 : place + 1;
 		if (matched == cells) {
 			if (try_turn(finder, (uint32_t)((index + 1 - cells) % finder->length)))
 				return;
@@ -222,8 +246,13 @@ static void match_turns(struct finder *finder)
 	}
 }
 
-// The state of the loop that the most states lead to: spare rows lead to the frame's first cell. *rank is how many do.
-static bool find_most_led_to(struct finder *finder, uint32_t *turn, uint32_t *rank)
+// The states that the most states lead to, since spare rows lead to the frame's first cell.
+struct most_led_to {
+	uint32_t state, rank;           // of all states, and how many lead there
+	uint32_t turn, turn_rank;       // of those of the loop
+};
+
+static bool find_most_led_to(struct finder *finder, struct most_led_to *most)
 {
 	const size_t states = (size_t)1 << finder->wiring->state_bits;
 	uint32_t *next = arena_array(finder->arena, states, sizeof *next);
@@ -233,10 +262,15 @@ static bool find_most_led_to(struct finder *finder, uint32_t *turn, uint32_t *ra
 	machine_all_next(finder->machine, next, 1);
 	for (size_t state = 0; state < states; state++)
 		counts[next[state]]++;
+	for (size_t state = 0; state < states; state++)
+		if (counts[state] > most->rank) {
+			most->state = (uint32_t)state;
+			most->rank = counts[state];
+		}
 	for (uint32_t index = 0; index < finder->length; index++)
-		if (counts[finder->states[index]] > *rank) {
-			*turn = index;
-			*rank = counts[finder->states[index]];
+		if (counts[finder->states[index]] > most->turn_rank) {
+			most->turn = index;
+			most->turn_rank = counts[finder->states[index]];
 		}
 	return true;
 }
@@ -246,7 +280,7 @@ static bool pins_agree(const struct finder *finder, uint32_t turn)
 {
 	uint32_t place = turn;
 	for (uint32_t cell = 0; cell < finder->timeline->cell_count; cell++) {
-		if (!same_pins(finder, finder->pins[place], finder->expected[cell]))
+		if (!shows_cell(finder, place, cell))
 			return false;
 		place = place + 1 == finder->length ? 0 : place + 1;
 	}
@@ -258,12 +292,19 @@ bool frame_find(struct arena *arena, const struct timeline *timeline, const stru
 {
 	struct finder finder = {.arena = arena, .timeline = timeline, .wiring = wiring, .machine = machine,
 	                        .expected = expected};
-	uint32_t turn = 0, rank = 0;
-	if (!list_loop(&finder) || !read_pins(&finder, decoders) || !list_unknown(&finder, decoders) ||
-	    !choose_anchor(&finder) || !find_most_led_to(&finder, &turn, &rank))
+	struct most_led_to most = {0};
+	const uint32_t period = timeline_period(timeline);
+	if (period == 0 || !list_loop(&finder) || !read_pins(&finder, decoders) || !list_unknown(&finder, decoders) ||
+	    !choose_anchor(&finder) || !find_most_led_to(&finder, &most))
 		return false;
-	finder.budget = BUDGET_LAPS * ((uint64_t)timeline->cell_count + finder.length);
-	const bool led_to_first = rank > 1 && pins_agree(&finder, turn) && try_turn(&finder, turn);
+	if (finder.length % period != 0 && most.rank > 1) {
+		*start = most.state; // the loop is none of the frame's: what spare rows lead to is left
+		return true;
+	}
+	find_always_held(&finder);
+	const uint64_t budget = BUDGET_LAPS * ((uint64_t)timeline->cell_count + finder.length);
+	finder.budget = budget > BUDGET_CELLS ? budget : BUDGET_CELLS;
+	const bool led_to_first = most.turn_rank > 1 && pins_agree(&finder, most.turn) && try_turn(&finder, most.turn);
 	if (!led_to_first && !find_borders(&finder))
 		return false;
 	if (!led_to_first)

@@ -11,7 +11,8 @@
 // turn does, the one whose pins agree longest from the first cell on. expected[] is timeline_pins. *start becomes the
 // state of the frame's first cell. False when memory is out.
 //
-// Pins are matched in linear time. Held bits are compared at each turn whose pins agree and that has a rare held value
+// If the loop's length does not fit the frame, the state that most of all states lead to is taken. Pins, and bits that are held in every
+// cell, are matched in linear time. Other held bits are compared at each turn whose pins agree and that has a rare held value
 // in its place; for images made to defeat that, the comparisons are cut off at a multiple of the frame, and the best
 // turn so far stands.
 bool frame_find(struct arena *arena, const struct timeline *timeline, const struct wiring *wiring,

@@ -3,6 +3,7 @@
 #include <assert.h>
 #include <inttypes.h>
 #include <stdio.h>
+#include <stdlib.h>
 #include <string.h>
 
 #include "base/text.h"
@@ -206,4 +207,22 @@ void json_put_time(json_t **object, const char *name, struct fraction seconds, e
 {
 	put_named(object, name, "s", json_fraction(seconds));
 	put_named(object, name, units[unit].key, json_time(seconds, unit));
+}
+
+char *json_text(json_t *document)
+{
+	const size_t flags = JSON_INDENT(2) | JSON_REAL_PRECISION(12);
+	char *dump = document != NULL ? json_dumps(document, flags) : NULL;
+	char *again = dump != NULL ? json_dumps(document, flags) : NULL; // jansson can leave out a key where memory is out
+	struct text text = {0};
+	if (again != NULL && strcmp(dump, again) == 0) {
+		text_put(&text, dump);
+		text_put(&text, "\n");
+	}
+	free(dump);
+	free(again);
+	if (!text.failed && text.length > 0)
+		return text.bytes;
+	text_release(&text);
+	return NULL;
 }

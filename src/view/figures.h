@@ -51,6 +51,9 @@ json_t *json_time(struct fraction seconds, enum time_unit unit); // in that unit
 void json_put(json_t **object, const char *key, json_t *value);
 void json_append(json_t **array, json_t *value);
 
+// The document as text that ends with a newline; malloc'd, owned by the caller. NULL when memory is out or document is NULL.
+char *json_text(json_t *document);
+
 // Sets NAME to the exact fraction and NAME_rounded to its decimal.
 void json_put_fraction(json_t **object, const char *name, struct fraction value);
 // Sets NAME_s to the exact seconds and NAME_ms (s_rounded, us, ns: the unit) to the decimal in that unit.

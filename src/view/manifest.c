@@ -12,52 +12,82 @@ static json_t *file_names(const char *name, const char *label, unsigned files)
 {
 	json_t *names = json_array();
 	if ((files & SCANLATCH_FILE_BIN) != 0)
-		json_array_append_new(names, json_sprintf("%s.%s.bin", name, label));
+		json_append(&names, json_sprintf("%s.%s.bin", name, label));
 	if ((files & SCANLATCH_FILE_HEX) != 0)
-		json_array_append_new(names, json_sprintf("%s.%s.hex", name, label));
+		json_append(&names, json_sprintf("%s.%s.hex", name, label));
 	return names;
+}
+
+static json_t *crc32_json(uint32_t crc32)
+{
+	return json_sprintf("%08x", (unsigned)crc32);
+}
+
+static json_t *chip_json(const struct plan *plan, const struct chip *chip, const struct image *image, unsigned files)
+{
+	json_t *entry = json_object();
+	json_put(&entry, "label", json_string(chip->label));
+	json_put(&entry, "part", json_string(chip->part->name));
+	json_put(&entry, "bytes", json_integer((json_int_t)image->length));
+	json_put(&entry, "crc32", crc32_json(image_crc32(image)));
+	json_put(&entry, "sum16", json_integer(image_sum16(image)));
+	json_put(&entry, "files", file_names(plan->name, chip->label, files));
+	json_put(&entry, "address", view_address_json(chip));
+	json_put(&entry, "data", view_data_json(plan, chip));
+	return entry;
 }
 
 static json_t *chips_json(const struct plan *plan, const struct image *images, unsigned files)
 {
 	json_t *chips = json_array();
-	for (size_t index = 0; index < plan->chip_count; index++) {
-		const struct chip *chip = &plan->chips[index];
-		json_t *entry = json_pack("{s:s, s:s, s:I, s:o, s:i}", "label", chip->label, "part", chip->part->name, "bytes",
-		                          (json_int_t)images[index].length, "crc32", json_sprintf("%08x", (unsigned)image_crc32(&images[index])),
-		                          "sum16", (int)image_sum16(&images[index]));
-		json_object_set_new(entry, "files", file_names(plan->name, chip->label, files));
-		json_object_set_new(entry, "address", view_address_json(chip));
-		json_object_set_new(entry, "data", view_data_json(plan, chip));
-		json_array_append_new(chips, entry);
-	}
+	for (size_t index = 0; index < plan->chip_count; index++)
+		json_append(&chips, chip_json(plan, &plan->chips[index], &images[index], files));
 	return chips;
 }
 
 static json_t *start_json(const struct proofs *proofs)
 {
 	json_t *start = json_array();
-	for (uint32_t bank = 0; bank < proofs->banks; bank++)
-		json_array_append_new(start, json_pack("{s:I, s:s, s:I}", "bank", (json_int_t)bank, "stage", "loop", "state",
-		                                       (json_int_t)proofs->closure.start_state));
+	for (uint32_t bank = 0; bank < proofs->banks; bank++) {
+		json_t *entry = json_object();
+		json_put(&entry, "bank", json_integer(bank));
+		json_put(&entry, "stage", json_string("loop"));
+		json_put(&entry, "state", json_integer(proofs->closure.start_state));
+		json_append(&start, entry);
+	}
 	return start;
 }
 
 json_t *view_frame_json(const struct timeline *timeline)
 {
+	json_t *frame = json_object(), *rate_object = json_object();
 	struct fraction rate;
-	if (!fraction_divide(timeline->plan->clock.master_hz, fraction_whole(timeline->tick_count), &rate))
-		return json_pack("{s:I, s:I, s:o, s:n}", "lines", (json_int_t)timeline->line_count, "cells", (json_int_t)timeline->cell_count,
-		                 "ticks", json_sprintf("%lld", (long long)timeline->tick_count), "rate");
-	return json_pack("{s:I, s:I, s:o, s:{s:o, s:o}}", "lines", (json_int_t)timeline->line_count, "cells",
-	                 (json_int_t)timeline->cell_count, "ticks", json_sprintf("%lld", (long long)timeline->tick_count), "rate", "fraction",
-	                 json_fraction(rate), "decimal", json_rounded(rate));
+	json_put(&frame, "lines", json_integer(timeline->line_count));
+	json_put(&frame, "cells", json_integer(timeline->cell_count));
+	json_put(&frame, "ticks", json_sprintf("%lld", (long long)timeline->tick_count));
+	if (!fraction_divide(timeline->plan->clock.master_hz, fraction_whole(timeline->tick_count), &rate)) {
+		json_decref(rate_object);
+		json_put(&frame, "rate", json_null());
+		return frame;
+	}
+	json_put(&rate_object, "fraction", json_fraction(rate));
+	json_put(&rate_object, "decimal", json_rounded(rate));
+	json_put(&frame, "rate", rate_object);
+	return frame;
 }
 
 json_t *view_manifest(const struct proofs *proofs, const struct image *images, unsigned files)
 {
 	const struct plan *plan = proofs->timeline->plan;
-	return json_pack("{s:i, s:s, s:{s:s, s:o}, s:o, s:o, s:o, s:o}", "format", 1, "name", plan->name, "plan", "file", plan->file_name,
-	                 "crc32", json_sprintf("%08x", (unsigned)plan->source_crc32), "chips", chips_json(plan, images, files), "start",
-	                 start_json(proofs), "frame", view_frame_json(proofs->timeline), "proofs", view_proofs_json(proofs));
+	json_t *manifest = json_object(), *source = json_object();
+	json_put(&source, "file", json_string(plan->file_name));
+	json_put(&source, "crc32", crc32_json(plan->source_crc32));
+	json_put(&manifest, "format", json_integer(1));
+	json_put(&manifest, "name", json_string(plan->name));
+	json_put(&manifest, "plan", source);
+	json_put(&manifest, "chips", chips_json(plan, images, files));
+	json_put(&manifest, "start", start_json(proofs));
+	json_put(&manifest, "frame", view_frame_json(proofs->timeline));
+	json_put(&manifest, "proofs", view_proofs_json(proofs));
+	return manifest;
 }

@@ -1,0 +1,66 @@
+#!/bin/bash
+# Every single allocation fails once: the program refuses with 3 and writes nothing, or its result is whole. And signals that come while
+# files are being written leave no temporary.
+set -u
+. tests/report.sh
+
+work=$(mktemp -d) || exit 1
+trap 'rm -rf "$work"' EXIT
+program=$(realpath "$SCANLATCH")
+cat >"$work/plan.yaml" <<'PLAN'
+scanlatch: 1
+name: jetty
+clock: { master: 1 MHz, cell: 1 tick }
+signals:
+  sync: { role: composite sync, active: low }
+  mark: { role: plain, active: high, from: { field: top, codes: auto } }
+lines:
+  only:
+    regions:
+      - { region: sync, cells: 2, assert: [sync] }
+      - { region: rest, cells: 4, assert: [mark], hold: { page: col } }
+frame: [ { repeat: 1, line: only } ]
+machine: { form: loop, state: 4 bits, fields: { top: 3, page: 1..0 } }
+chips: { part: 28C64 }
+PLAN
+cd "$work" || exit 1
+"$program" build plan.yaml --listing -o whole >whole.stdout
+same 'without faults: status' 0 $?
+
+# A sanitizer has allocators of its own, which can not be replaced.
+if grep -qa __asan_init "$program"; then
+	finish
+	exit
+fi
+"${CC:-cc}" -shared -fPIC -O1 -o faults.so "$OLDPWD/tests/command/faults.c" || fail 'the faults compile'
+
+# judge STATUS NUMBER: one run with a failed allocation.
+judge() {
+	case $1 in
+	0) diff -r whole out >/dev/null && cmp -s whole.stdout stdout || fail "allocation $2: status 0, but another result" ;;
+	3) [ -z "$(find out -type f 2>/dev/null)" ] && [ -s stderr ] || fail "allocation $2: status 3, but files or no word" ;;
+	*) fail "allocation $2: status $1" "$(head -n 3 stderr)" ;;
+	esac
+}
+
+sed -i 's#whole/#out/#' whole.stdout
+LD_PRELOAD=./faults.so FAULTS_COUNT=count "$program" build plan.yaml --listing -o out >/dev/null
+total=$(cat count)
+refusals=0
+for ((number = 1; number <= total; number++)); do
+	rm -rf out
+	LD_PRELOAD=./faults.so FAULTS_ALLOCATION=$number "$program" build plan.yaml --listing -o out >stdout 2>stderr
+	status=$?
+	[ $status -ne 3 ] || refusals=$((refusals + 1))
+	judge $status "$number"
+done
+holds "$refusals of $total allocations refused" test "$refusals" -gt 500 -a "$cases_failed" -eq 0
+
+# A signal that comes while the first file is flushed ends the program only after all files are whole.
+for signal in INT TERM HUP QUIT; do
+	rm -rf out
+	holds "$signal ends the program while it writes" python3 "$OLDPWD/tests/command/faults_signal.py" "$signal" "$program" build plan.yaml -o out
+	same "$signal: no temporary is left" '' "$(find out -name '.*' -type f)"
+	same "$signal: the files are whole" "$(cd whole && cksum jetty.rom0.bin jetty.rom0.hex)" "$(cd out && cksum jetty.rom0.bin jetty.rom0.hex)"
+done
+finish
