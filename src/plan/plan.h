@@ -181,7 +181,7 @@ struct sweep {
 struct plan {
 	struct arena *arena;
 	const struct source *source;
-	const char *file_name;        // the plan's file name without its folder, or "standard input"
+	const char *file_name;        // the plan's file name without its folder, or "standard input"; UTF-8 that can be printed
 	uint32_t source_crc32;
 	const char *name;
 	const char *note;             // "" if none

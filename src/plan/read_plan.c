@@ -3,7 +3,9 @@
 #include <string.h>
 
 #include "base/arena.h"
+#include "base/excerpt.h"
 #include "base/file.h"
+#include "base/text.h"
 
 enum {
 	PLAN_VERSION,
@@ -116,10 +118,17 @@ static void read_root(struct reader *reader, const struct node *root)
 		read_sweeps(reader, values[PLAN_SWEEP]);
 }
 
-static const char *base_name(const char *path)
+// A path without its folders, printable as messages have it: a file's name may be any bytes, but JSON is UTF-8 (RFC 8259, section 8.1).
+// In the arena; NULL when memory is out.
+static const char *base_name(struct arena *arena, const char *path)
 {
 	const char *slash = strrchr(path, '/');
-	return slash != NULL ? slash + 1 : path;
+	const char *name = slash != NULL ? slash + 1 : path;
+	struct text shown = {0};
+	excerpt_put_printable(name, strlen(name), &shown);
+	const char *copy = shown.failed ? NULL : arena_copy(arena, text_string(&shown), shown.length);
+	text_release(&shown);
+	return copy;
 }
 
 struct plan *plan_read(const struct source *source, const struct catalogue *catalogue, struct diagnostics *diagnostics)
@@ -127,14 +136,15 @@ struct plan *plan_read(const struct source *source, const struct catalogue *cata
 	const size_t errors_before = diagnostics_error_count(diagnostics);
 	struct arena *arena = arena_create();
 	struct plan *plan = arena != NULL ? arena_alloc(arena, sizeof *plan) : NULL;
-	if (plan == NULL) {
+	const char *file_name = plan != NULL ? base_name(arena, source->name) : NULL;
+	if (file_name == NULL) {
 		diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){source, 0, 0}, "memory is out");
 		arena_destroy(arena);
 		return NULL;
 	}
 	plan->arena = arena;
 	plan->source = source;
-	plan->file_name = base_name(source->name);
+	plan->file_name = file_name;
 	plan->source_crc32 = file_crc32(source->bytes, source->length);
 	for (size_t role = 0; role < ROLE_COUNT; role++)
 		plan->role_signal[role] = -1;

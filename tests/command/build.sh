@@ -94,6 +94,15 @@ cp tide-board-60.yaml elsewhere.yaml
 build 0 elsewhere.yaml --listing -o third
 holds 'same images from a file of another name' cmp first/tide-board-60.rom0.bin third/tide-board-60.rom0.bin
 
+# A file's name may be any bytes; the manifest, which is UTF-8, has it as messages show it.
+cp lead.yaml "$(printf 'tide\377\303\nboard.yaml')"
+build 0 "$(printf 'tide\377\303\nboard.yaml')" -o odd
+same 'a file name that is not UTF-8: manifest' 'tide???board.yaml' \
+	"$(python3 -c 'import json; print(json.load(open("odd/lead.manifest.json"))["plan"]["file"])')"
+same 'a file name that is not UTF-8: check --json' 'tide???board.yaml' \
+	"$("$SCANLATCH" check --json "$(printf 'tide\377\303\nboard.yaml')" 2>stderr |
+		python3 -c 'import json, sys; print(json.load(sys.stdin)["plan"]["file"])' 2>stderr)"
+
 # Proofs that fail.
 build 1 out-of-step.yaml -o failed
 holds 'a must failed: nothing written' test ! -e failed
