@@ -1,5 +1,6 @@
 // Glitches: cell edges at which the code of a decoded field changes in more than one bit, so that the decoder may see a
-// code in between and flicker; and what is taken straight from the EEPROM, and is unsettled after each edge.
+// code in between and flicker; when decoded pins settle; and what is taken straight from the EEPROM, and is unsettled
+// after each edge.
 #include <string.h>
 
 #include "base/arena.h"
@@ -158,14 +159,14 @@ static bool search_all(struct trial *trial)
 	return true;
 }
 
-// How long what a chip answers is unsettled after an edge.
-static struct fraction unsettled(const struct trial *trial, const struct chip *chip)
+// How long after an edge what hangs on the state is unsettled, if it takes `answer_s` to answer.
+static struct fraction unsettled(const struct trial *trial, struct fraction answer_s)
 {
 	const struct timing *timing = &trial->timeline->plan->timing;
 	const struct fraction delay_s = trial->wiring.advance == ADVANCE_COUNT ? timing->counter_delay_s : timing->latch_delay_s;
-	// Nanoseconds of data sheets: far from 64 bits. Should they not fit, the access time alone stands.
-	struct fraction sum_s = chip->access_s;
-	fraction_add(delay_s, chip->access_s, &sum_s);
+	// Nanoseconds of data sheets: far from 64 bits. Should they not fit, the answer alone stands.
+	struct fraction sum_s = answer_s;
+	fraction_add(delay_s, answer_s, &sum_s);
 	return sum_s;
 }
 
@@ -174,7 +175,7 @@ static void measure_direct(const struct trial *trial, struct glitch_result *resu
 	const struct chip *chip = &trial->wiring.chips[slowest_chip(&trial->wiring)];
 	result->direct = true;
 	result->unsettled_part = chip->label;
-	result->unsettled_s = unsettled(trial, chip);
+	result->unsettled_s = unsettled(trial, chip->access_s);
 }
 
 static bool carries_clear(const struct chip *chip)
@@ -198,13 +199,15 @@ static void measure_clear(const struct trial *trial, struct glitch_result *resul
 		return;
 	result->async_clear = true;
 	result->clear_part = slowest->label;
-	result->clear_unsettled_s = unsettled(trial, slowest);
+	result->clear_unsettled_s = unsettled(trial, slowest->access_s);
 }
 
 bool prove_glitches(struct trial *trial)
 {
 	struct glitch_result *result = &trial->proofs->glitches;
 	result->has_field_signals = trial->decoders->count > 0;
+	if (result->has_field_signals)
+		result->settle_s = unsettled(trial, trial->timeline->plan->timing.decoder_delay_s);
 	if (trial->wiring.outputs == OUTPUTS_DIRECT)
 		measure_direct(trial, result);
 	if (trial->wiring.advance == ADVANCE_COUNT && trial->wiring.clear == CLEAR_ASYNC)

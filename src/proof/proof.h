@@ -114,6 +114,7 @@ struct glitch_result {
 	uint64_t multi_bit_edges;  // more than one bit of some decoded field changes
 	struct glitch_edge *first; // for each disturbed signal its first edge
 	size_t disturbed;
+	struct fraction settle_s;    // pins decoded from the state: latch or counter delay + decoder delay
 	bool direct;               // data outputs are direct
 	struct fraction unsettled_s; // for direct outputs: latch or counter delay + access time
 	const char *unsettled_part;  // label of the slowest chip

@@ -236,8 +236,29 @@ static void put_upset(struct text *out, const struct proofs *proofs)
 	put_mean(out, upset->mean_slip_cells);
 }
 
-static void put_decoded(struct text *out, const struct glitch_result *glitches)
+// When a decoded pin has its level. An async clear strikes once the passing state has been looked up.
+static void put_settled(struct text *out, const struct proofs *proofs)
 {
+	const struct plan *plan = plan_of(proofs);
+	const struct glitch_result *glitches = &proofs->glitches;
+	const bool counts = plan->machine.advance == ADVANCE_COUNT;
+	text_put(out, "; decoded pins settle after ");
+	text_put_time_in(out, glitches->settle_s, UNIT_NANOSECONDS);
+	text_put(out, counts ? " (counter " : " (latch ");
+	text_put_time_number(out, counts ? plan->timing.counter_delay_s : plan->timing.latch_delay_s, UNIT_NANOSECONDS);
+	text_put(out, " + decoder ");
+	text_put_time_number(out, plan->timing.decoder_delay_s, UNIT_NANOSECONDS);
+	text_put(out, ")");
+	if (!glitches->async_clear)
+		return;
+	text_put(out, ", ");
+	text_put_time_in(out, glitches->clear_unsettled_s, UNIT_NANOSECONDS);
+	text_put(out, " later where the counter is cleared");
+}
+
+static void put_decoded(struct text *out, const struct proofs *proofs)
+{
+	const struct glitch_result *glitches = &proofs->glitches;
 	if (!glitches->has_field_signals) {
 		text_put(out, "no signal is decoded from the state");
 		return;
@@ -248,6 +269,7 @@ static void put_decoded(struct text *out, const struct glitch_result *glitches)
 		text_put(out, "no decoded signal can flicker");
 	else
 		text_put_count(out, glitches->disturbed, "decoded signal may flicker", "decoded signals may flicker");
+	put_settled(out, proofs);
 }
 
 static void put_unsettled(struct text *out, struct fraction seconds)
@@ -261,7 +283,7 @@ static void put_unsettled(struct text *out, struct fraction seconds)
 static void put_glitches(struct text *out, const struct proofs *proofs)
 {
 	const struct glitch_result *glitches = &proofs->glitches;
-	put_decoded(out, glitches);
+	put_decoded(out, proofs);
 	if (glitches->direct) {
 		text_put(out, "; the data outputs are taken straight from the EEPROMs and are ");
 		put_unsettled(out, glitches->unsettled_s);

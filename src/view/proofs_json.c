@@ -175,6 +175,8 @@ static void put_glitches(json_t **object, const struct proofs *proofs)
 	json_put(object, "edges", count(glitches->edges));
 	json_put(object, "multi_bit_edges", count(glitches->multi_bit_edges));
 	json_put(object, "disturbed", disturbed);
+	if (glitches->has_field_signals)
+		json_put_time(object, "settle", glitches->settle_s, UNIT_NANOSECONDS);
 	json_put(object, "direct", truth(glitches->direct));
 	if (glitches->direct) {
 		json_put_time(object, "unsettled", glitches->unsettled_s, UNIT_NANOSECONDS);

@@ -334,6 +334,29 @@ static void edges_alike(void **test)
 	by_hand_destroy(hand);
 }
 
+// The decoder answers 38 ns after the latch, 15 ns, or the counter, 51 ns.
+static void decoded_pins_settle(void **test)
+{
+	(void)test;
+	struct by_hand *hand = gated((const uint32_t[]){1, 3}, 2, (uint32_t[]){0, 2, 6, 4}, 1);
+	hand->plan.timing.latch_delay_s = ratio(15, 1000000000);
+	hand->plan.timing.counter_delay_s = ratio(51, 1000000000);
+	hand->plan.timing.decoder_delay_s = ratio(38, 1000000000);
+	struct proofs *proofs = prove(hand, 0);
+	assert_ratio(proofs->glitches.settle_s, 53, 1000000000);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+	hand = passing_counter(5, (const uint32_t[]){0, 2}, 2);
+	hand->plan.timing.latch_delay_s = ratio(15, 1000000000);
+	hand->plan.timing.counter_delay_s = ratio(51, 1000000000);
+	hand->plan.timing.decoder_delay_s = ratio(38, 1000000000);
+	proofs = prove(hand, 0);
+	assert_ratio(proofs->glitches.settle_s, 89, 1000000000);
+	assert_ratio(proofs->glitches.clear_unsettled_s, 51, 1000000000);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
 static void nothing_to_disturb(void **test)
 {
 	(void)test;
@@ -409,6 +432,7 @@ int main(void)
 		cmocka_unit_test(passing_code_of_its_own),
 		cmocka_unit_test(on_the_way_to_the_passing_state),
 		cmocka_unit_test(edges_alike),
+		cmocka_unit_test(decoded_pins_settle),
 		cmocka_unit_test(nothing_to_disturb),
 		cmocka_unit_test(direct_outputs_settle),
 		cmocka_unit_test(async_clear_settles),

@@ -65,7 +65,8 @@ static inline void harbour_plan(struct harbour *harbour)
 	harbour->plan.clock = (struct clock){.master_hz = {157500000, 11}, .has_subcarrier = true, .phase = PHASE_LINES,
 	                                     .phase_count = 1};
 	harbour->plan.machine = (struct machine_plan){.state_bits = 16, .fields = &harbour->field, .field_count = 1};
-	harbour->plan.timing.share = (struct fraction){1, 1};
+	harbour->plan.timing = (struct timing){.latch_delay_s = {41, 1000000000}, .counter_delay_s = {50, 1000000000},
+	                                       .decoder_delay_s = {38, 1000000000}, .share = {1, 1}};
 }
 
 static inline void harbour_timeline(struct harbour *harbour)
@@ -94,7 +95,8 @@ static inline void harbour_figures(struct proofs *proofs)
 	proofs->upset = (struct upset_result){.upsets = 423392, .worst_cells = 101, .worst_cell = 300, .worst_bit = 14,
 	                                      .mean_cells = {51, 50}, .worst_slip_cells = 50, .worst_slip_lines = {50, 101},
 	                                      .mean_slip_cells = {1, 3}, .worst_slip_cell = 107, .worst_slip_bit = 3};
-	proofs->glitches = (struct glitch_result){.has_field_signals = true, .edges = 26462, .unsettled_s = {0, 1}};
+	proofs->glitches = (struct glitch_result){.has_field_signals = true, .edges = 26462, .settle_s = {79, 1000000000},
+	                                          .unsettled_s = {0, 1}};
 	// 9 ticks are 99/157500000 s = 11/17500000 s = 628.571 ns; 41 + 150 + 15 + 20 = 226 ns; what is left, 1409/3500000000 s.
 	proofs->speed = (struct speed_result){.cell_s = {11, 17500000}, .available_s = {11, 17500000},
 	                                      .delay_s = {41, 1000000000}, .access_s = {3, 20000000},

@@ -75,7 +75,8 @@ static void the_figures_of_a_good_plan(void **state)
 		"'line_type':'border','cell':6,'region':'sync','frame_cell':107,'bit':3},'mean_slip_cells':'1/3',"
 		"'mean_slip_cells_rounded':0.333333}");
 	assert_proof(&harbour, PROOF_GLITCHES,
-		"{'verdict':'pass','must':false,'decoded':true,'edges':26462,'multi_bit_edges':0,'disturbed':[],'direct':false,'async_clear':false}");
+		"{'verdict':'pass','must':false,'decoded':true,'edges':26462,'multi_bit_edges':0,'disturbed':[],"
+		"'settle_s':'79/1000000000','settle_ns':79.0,'direct':false,'async_clear':false}");
 	assert_proof(&harbour, PROOF_SPEED,
 		"{'verdict':'pass','must':false,'cell_s':'11/17500000','cell_ns':628.571429,'available_s':'11/17500000',"
 		"'available_ns':628.571429,'delay_s':'41/1000000000','delay_ns':41.0,'access_s':'3/20000000','access_ns':150.0,"
@@ -161,7 +162,8 @@ static void disturbed_signals_are_listed(void **state)
 	assert_proof(&harbour, PROOF_GLITCHES,
 		"{'verdict':'fail','must':false,'decoded':true,'edges':26462,'multi_bit_edges':432,'disturbed':[{'signal':'load',"
 		"'edges':216,'line':18,'line_type':'picture','cell':21,'region':'picture','frame_cell':1839,'from_state':41251,"
-		"'to_state':17494,'from_code':5,'between_code':7,'to_code':2}],'direct':false,'async_clear':false}");
+		"'to_state':17494,'from_code':5,'between_code':7,'to_code':2}],'settle_s':'79/1000000000','settle_ns':79.0,"
+		"'direct':false,'async_clear':false}");
 }
 
 static void direct_outputs_are_unsettled(void **state)
