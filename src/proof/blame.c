@@ -111,3 +111,15 @@ const char *next_bytes(const struct trial *trial, uint32_t state)
 	text_release(&text);
 	return copy;
 }
+
+struct counterexample blame_loop(const struct trial *trial, uint32_t state)
+{
+	const uint32_t next = machine_next(trial->machine, state), home = trial->lap.states[0];
+	struct counterexample found = {.present = true, .bank = trial->bank, .state = state, .signal = SIZE_MAX};
+	blame_bits(trial, next_kind(trial), next ^ home, &found);
+	const char *bytes = next_bytes(trial, state);
+	if (bytes != NULL)
+		found.what = arena_format(trial->proofs->arena, "its next state is 0x%" PRIX32 " (%s), expected one that leads to the frame, "
+		                          "such as its first, 0x%" PRIX32, next, bytes, home);
+	return found;
+}

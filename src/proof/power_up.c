@@ -33,11 +33,10 @@ static uint64_t count_cleared(const struct trial *trial)
 static bool loop_fails(struct trial *trial)
 {
 	const struct ways *ways = trial->ways;
-	struct counterexample found = {.present = true, .bank = trial->bank, .state = ways->second_loop_state,
-	                               .signal = SIZE_MAX};
-	found.what = arena_format(trial->proofs->arena, "state 0x%" PRIX32 " is on a second loop of %" PRIu32
-	                          " cells and never reaches the frame; %" PRIu64 " states are lost to second loops",
-	                          ways->second_loop_state, ways->second_loop_cells, ways->lost_states);
+	struct counterexample found = blame_loop(trial, ways->second_loop_state);
+	if (found.what != NULL)
+		found.what = arena_format(trial->proofs->arena, "state 0x%" PRIX32 " is on a second loop of %" PRIu32 " cell%s: %s",
+		                          found.state, ways->second_loop_cells, ways->second_loop_cells == 1 ? "" : "s", found.what);
 	return proof_fails(trial, PROOF_POWER_UP, found);
 }
 

@@ -95,6 +95,9 @@ uint32_t signals_first_cell(const struct trial *trial);
 // The bytes of all chips that carry the next state (or clear) of a state, in words: "U7 0x01A3: 0x5B and U8 0x01A3:
 // 0x00". In the proofs' arena; NULL when memory is out.
 const char *next_bytes(const struct trial *trial, uint32_t state);
+// A counterexample at a state of a second loop, without a cell. Its words, "its next state is …", say what would mend its
+// row, and are NULL when memory is out.
+struct counterexample blame_loop(const struct trial *trial, uint32_t state);
 // The chip with the longest access time; of equals, the first. Cannot fail.
 size_t slowest_chip(const struct wiring *wiring);
 // The cell before, around the frame. Cannot fail.

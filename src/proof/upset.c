@@ -105,13 +105,31 @@ static void finish_figures(const struct trial *trial, struct upset_result *resul
 	              &result->worst_slip_lines);
 }
 
+// A state of the loop that the machine falls into from a state on, by Brent's search for cycles (1980): in a few times
+// the steps of the way there and once around.
+static uint32_t state_of_loop(const struct machine *machine, uint32_t state)
+{
+	uint32_t waiting = state, ahead = machine_next(machine, state);
+	for (uint64_t steps = 1, limit = 1; ahead != waiting; steps++) {
+		if (steps == limit) {
+			waiting = ahead;
+			limit *= 2;
+			steps = 0;
+		}
+		ahead = machine_next(machine, ahead);
+	}
+	return waiting;
+}
+
 static bool upset_fails(struct trial *trial, const struct tally *tally)
 {
-	struct counterexample found = {.present = true, .bank = trial->bank, .cell = tally->lost_cell, .signal = SIZE_MAX};
-	found.state = trial->lap.states[tally->lost_cell];
-	found.what = arena_format(trial->proofs->arena, "with bit %u flipped, state 0x%" PRIX32 " becomes 0x%" PRIX32
-	                          ", from which the frame is never regained", tally->lost_bit, found.state,
-	                          found.state ^ (uint32_t)1 << tally->lost_bit);
+	const uint32_t before = trial->lap.states[tally->lost_cell], after = before ^ (uint32_t)1 << tally->lost_bit;
+	struct counterexample found = blame_loop(trial, state_of_loop(trial->machine, after));
+	found.cell = tally->lost_cell;
+	if (found.what != NULL)
+		found.what = arena_format(trial->proofs->arena, "with bit %u flipped, state 0x%" PRIX32 " becomes 0x%" PRIX32
+		                          ", from which the frame is never regained: state 0x%" PRIX32 " is on a second loop, %s",
+		                          tally->lost_bit, before, after, found.state, found.what);
 	return proof_fails(trial, PROOF_UPSET, found);
 }
 

@@ -140,15 +140,16 @@ static void detail_counterexample(struct report *report, enum proof_kind kind)
 	}
 }
 
+// A loop off the frame has no place in it, but a row.
 static void detail_second_loop(struct report *report)
 {
-	const struct power_up_result *power_up = &report->proofs->power_up;
-	text_put(&report->words, "a second loop of ");
-	text_put_count(&report->words, power_up->second_loop_cells, "cell", "cells");
-	text_put(&report->words, " goes through ");
-	put_state(report, power_up->second_loop_state);
-	put_bank(report, report->proofs->proof[PROOF_POWER_UP].counterexample.bank);
+	const struct counterexample *found = &report->proofs->proof[PROOF_POWER_UP].counterexample;
+	if (report->proofs->banks > 1)
+		text_printf(&report->words, "in bank %" PRIu32 ", ", found->bank);
+	text_put(&report->words, found->what);
 	end_detail(report);
+	if (found->byte_known)
+		detail_byte(report, found);
 }
 
 static void detail_glitch(struct report *report, const struct glitch_edge *edge)

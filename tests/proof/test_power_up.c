@@ -58,8 +58,13 @@ static void a_second_loop(void **test)
 	const struct counterexample *found = &proofs->proof[PROOF_POWER_UP].counterexample;
 	assert_true(found->present);
 	assert_int_equal(found->state, 6);
-	assert_string_equal(found->what, "state 0x6 is on a second loop of 2 cells and never reaches the frame; 3 states are lost to "
-	                    "second loops");
+	assert_string_equal(found->what, "state 0x6 is on a second loop of 2 cells: its next state is 0x7 (rom0 0x0006: 0xEF), "
+	                    "expected one that leads to the frame, such as its first, 0x0");
+	// Next 7, sync released, blank not asserted, and three open pins.
+	assert_true(found->byte_known);
+	assert_int_equal(found->byte.chip, 0);
+	assert_int_equal(found->byte.address, 6);
+	assert_int_equal(found->byte.value, 0xEF);
 	assert_true(proofs_failed(proofs, false));
 	proofs_destroy(proofs);
 	by_hand_destroy(hand);
@@ -78,6 +83,31 @@ static void loops_of_one_state(void **test)
 	assert_int_equal(proofs->power_up.second_loop_cells, 1);
 	assert_int_equal(proofs->power_up.longest_cells, 1);
 	assert_int_equal(proofs->power_up.longest_state, 6);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
+// 6 → 6, and home is 0: bits 1 and 2 are wrong, which U8 holds. Bit 0 of U7 is as in any spare row.
+static void the_chip_with_the_wrong_bits(void **test)
+{
+	(void)test;
+	struct by_hand *hand = small_board();
+	struct chip *first = add_chip(hand, "U7"), *second = add_chip(hand, "U8");
+	first->data[0] = (struct data_wire){DATA_NEXT, 0};
+	first->data[1] = (struct data_wire){DATA_SIGNAL, 0};
+	second->data[0] = (struct data_wire){DATA_SIGNAL, 1};
+	second->data[1] = (struct data_wire){DATA_NEXT, 2};
+	second->data[2] = (struct data_wire){DATA_NEXT, 1};
+	burn_small(hand, small_states);
+	burn(hand, 6, 6, 0);
+	struct proofs *proofs = prove(hand, 0);
+	const struct counterexample *found = &proofs->proof[PROOF_POWER_UP].counterexample;
+	assert_verdict(proofs, PROOF_CLOSURE, VERDICT_PASS);
+	assert_verdict(proofs, PROOF_POWER_UP, VERDICT_FAIL);
+	assert_string_equal(found->what, "state 0x6 is on a second loop of 1 cell: its next state is 0x6 (U7 0x0006: 0xFE and U8 "
+	                    "0x0006: 0xFE), expected one that leads to the frame, such as its first, 0x0");
+	assert_true(found->byte_known);
+	assert_int_equal(found->byte.chip, 1);
 	proofs_destroy(proofs);
 	by_hand_destroy(hand);
 }
@@ -340,6 +370,7 @@ int main(void)
 		cmocka_unit_test(the_longest_way),
 		cmocka_unit_test(a_second_loop),
 		cmocka_unit_test(loops_of_one_state),
+		cmocka_unit_test(the_chip_with_the_wrong_bits),
 		cmocka_unit_test(not_judged_unless_closed),
 		cmocka_unit_test(passing_states_settle_first),
 		cmocka_unit_test(counter_overflows),

@@ -143,11 +143,12 @@ static void a_second_loop_has_no_place_in_the_frame(void **state)
 	harbour.proofs.power_up.second_loop_state = 18;
 	harbour.proofs.power_up.second_loop_cells = 3;
 	harbour_fails(&harbour, PROOF_POWER_UP, (struct counterexample){.present = true, .state = 18, .signal = SIZE_MAX,
-		.what = "17 states are lost"});
+		.byte_known = true, .byte = {CHIP_ROM0, 18, 52}, .what = "17 states are lost"});
 	assert_proof(&harbour, PROOF_POWER_UP,
 		"{'verdict':'fail','must':true,'states':65536,'frame_states':26462,'cleared_states':0,'longest_cells':1,"
 		"'longest_lines':'1/101','longest_lines_rounded':0.009901,'longest_state':0,'longest_bank':0,'lost_states':17,"
-		"'second_loop':{'state':18,'cells':3},'counterexample':{'what':'17 states are lost','bank':0,'state':18}}");
+		"'second_loop':{'state':18,'cells':3},'counterexample':{'what':'17 states are lost','bank':0,'state':18,"
+		"'chip':'rom0','address':18,'byte':52}}");
 }
 
 static void disturbed_signals_are_listed(void **state)

@@ -261,19 +261,19 @@ static void a_second_loop_is_shown(void **state)
 	harbour_fill(&harbour);
 	struct power_up_result *power_up = &harbour.proofs.power_up;
 	power_up->lost_states = 17;
-	power_up->second_loop_state = 0x12;
-	power_up->second_loop_cells = 3;
 	harbour_fails(&harbour, PROOF_POWER_UP, (struct counterexample){.present = true, .bank = 1, .state = 0x12,
-		.signal = SIZE_MAX, .what = "17 states are lost"});
+		.signal = SIZE_MAX, .byte_known = true, .byte = {CHIP_ROM0, 0x12, 0x34},
+		.what = "state 0x12 is on a second loop of 3 cells: its next state is 0x34"});
 	assert_proof(&harbour, PROOF_POWER_UP,
 		"FAIL  power-up  17 of 65536 states never come home\n"
-		"      a second loop of 3 cells goes through state 0x0012\n");
+		"      state 0x12 is on a second loop of 3 cells: its next state is 0x34\n"
+		"      row of state 0x0012: byte 0x34 at address 0x00012 of chip rom0\n");
 	harbour.proofs.banks = 2;
 	power_up->lost_states = 1;
-	power_up->second_loop_cells = 1;
 	assert_proof(&harbour, PROOF_POWER_UP,
 		"FAIL  power-up  1 of 65536 states in 2 banks never comes home\n"
-		"      a second loop of 1 cell goes through state 0x0012, bank 1\n");
+		"      in bank 1, state 0x12 is on a second loop of 3 cells: its next state is 0x34\n"
+		"      row of state 0x0012: byte 0x34 at address 0x00012 of chip rom0\n");
 }
 
 // 2617 cells of 101 a line are 25.911 lines; 303 are 3.
@@ -320,15 +320,16 @@ static void an_upset_that_never_comes_home_is_shown(void **state)
 	(void)state;
 	struct harbour harbour;
 	harbour_fill(&harbour);
-	harbour_fails(&harbour, PROOF_UPSET, (struct counterexample){.present = true, .cell = 1823, .state = 0x8005,
-		.signal = SIZE_MAX, .what = "with bit 3 flipped, state 0x8005 becomes 0x800D, from which the frame is never "
-		"regained"});
+	harbour_fails(&harbour, PROOF_UPSET, (struct counterexample){.present = true, .cell = 1823, .state = 0x800D,
+		.signal = SIZE_MAX, .byte_known = true, .byte = {CHIP_ROM1, 0x800D, 0xC00D},
+		.what = "with bit 3 flipped, state 0x8005 becomes 0x800D, from which the frame is never regained"});
 	assert_proof(&harbour, PROOF_UPSET,
 		"miss  upset     423392 flips of one bit, some of which never come home; the others home after 101\n"
 		"                cells at worst (bit 14 in line 2, cell 98), 1.02 in the mean; the raster slips 50\n"
 		"                cells (0.495 lines) at worst (bit 3 in line 1, cell 6), 0.333 in the mean\n"
 		"      with bit 3 flipped, state 0x8005 becomes 0x800D, from which the frame is never regained\n"
-		"      at line 18 (picture), cell 5 (sync); cell 1823 of the frame, state 0x8005\n");
+		"      at line 18 (picture), cell 5 (sync); cell 1823 of the frame\n"
+		"      row of state 0x800D: word 0xC00D at address 0x800D of chip rom1\n");
 }
 
 // Cell 1839 is cell 21 of line 18. State 0xA123 has code 5 in its upper three bits, 0x4456 code 2; 7 differs from both.
