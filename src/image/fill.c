@@ -72,7 +72,7 @@ static bool create_writer(struct lane_writer *writer, struct arena *arena, const
 {
 	*writer = (struct lane_writer){.chip = chip, .wiring = wiring, .known_lane = lane_of_levels(chip, 0)};
 	make_tables(writer);
-	writer->lanes = arena_array(arena, (size_t)1 << wiring->state_bits, chip_width(chip));
+	writer->lanes = arena_array(arena, (size_t)1 << wiring->line.state_bits, chip_width(chip));
 	return writer->lanes != NULL;
 }
 
@@ -89,7 +89,7 @@ static void put_lane(struct lane_writer *writer, uint32_t state, uint32_t lane)
 static void put_spare(struct lane_writer *writer, const struct row *spare)
 {
 	const uint32_t lane = lane_of_row(writer, spare);
-	const uint32_t states = (uint32_t)1 << writer->wiring->state_bits;
+	const uint32_t states = (uint32_t)1 << writer->wiring->line.state_bits;
 	if (chip_width(writer->chip) == 1) {
 		memset(writer->lanes, (int)lane, states);
 		return;
@@ -113,7 +113,7 @@ static void put_rows(struct lane_writer *writers, const struct table *table)
 // True if the state's bits are on the lowest address pins in order.
 static bool is_straight(const struct lane_writer *writer)
 {
-	for (unsigned pin = 0; pin < writer->wiring->state_bits; pin++)
+	for (unsigned pin = 0; pin < writer->wiring->line.state_bits; pin++)
 		if (writer->chip->address[pin].kind != ADDRESS_STATE || writer->chip->address[pin].index != pin)
 			return false;
 	return true;
@@ -121,7 +121,7 @@ static bool is_straight(const struct lane_writer *writer)
 
 static void copy_straight(const struct lane_writer *writer, const struct image *image)
 {
-	const size_t bytes = chip_width(writer->chip) << writer->wiring->state_bits;
+	const size_t bytes = chip_width(writer->chip) << writer->wiring->line.state_bits;
 	for (size_t start = 0; start < image->length; start += bytes)
 		memcpy(image->bytes + start, writer->lanes, bytes);
 }

@@ -17,7 +17,7 @@ scanlatch_images *scanlatch_images_create(const scanlatch_plan *plan)
 		return NULL;
 	}
 	const struct machine_plan *machine = &plan->plan->machine;
-	const bool counted = machine->advance == ADVANCE_COUNT;
+	const bool counted = machine->line.advance == ADVANCE_COUNT;
 	*images = (scanlatch_images){.arena = arena, .plan = plan, .images = chips, .sources = sources,
 	                             .has_start = machine->has_start || counted, .start = counted ? 0 : machine->start};
 	return images;

@@ -9,7 +9,7 @@
 // Bits of a position inside a cache line: of a byte in an image, and of a state in the result.
 #define LINE_BITS 6
 
-// What the bytes of a chip stand for: next bits, or clear.
+// What the bytes of a chip stand for: next bits, or clear (CONTROL_CLEAR).
 typedef const uint32_t (*meaning)[256];
 
 // A block: the states base | state[k], at the addresses (of base) | address[k].
@@ -34,7 +34,7 @@ struct group {
 static meaning chip_meaning(const struct machine *machine, size_t chip)
 {
 	const struct chip_reader *reader = &machine->readers[chip];
-	return machine->wiring.advance == ADVANCE_COUNT ? reader->clear : reader->next;
+	return machine->wiring.line.advance == ADVANCE_COUNT ? reader->control : reader->next;
 }
 
 // The state bits that should run inside a block: the lowest, those on the chip's lowest address pins, and others to
@@ -125,7 +125,7 @@ static bool same_address(const struct chip_reader *left, const struct chip_reade
 // Every chip that has a say in the next state, group by group.
 static void gather_all(const struct machine *machine, uint32_t *next, size_t stride_words)
 {
-	bool counts = machine->wiring.advance == ADVANCE_COUNT;
+	bool counts = machine->wiring.line.advance == ADVANCE_COUNT;
 	uint32_t waiting = 0;
 	for (size_t chip = 0; chip < machine->wiring.chip_count; chip++) {
 		const struct chip_reader *reader = &machine->readers[chip];
@@ -152,7 +152,7 @@ static void gather_all(const struct machine *machine, uint32_t *next, size_t str
 static void count_from_clears(const struct machine *machine, uint32_t *next, size_t stride)
 {
 	const uint32_t last = machine->state_mask;
-	const bool async = machine->wiring.clear == CLEAR_ASYNC;
+	const bool async = machine->wiring.line.clear == CLEAR_ASYNC;
 	const bool first_clears = next[0] != 0;
 	uint32_t from_first = first_clears || (async && next[stride] != 0) ? 0 : 1;
 	for (uint32_t state = 0; state < last; state++) {
@@ -169,6 +169,6 @@ static void count_from_clears(const struct machine *machine, uint32_t *next, siz
 void machine_all_next(const struct machine *machine, uint32_t *next, size_t stride_words)
 {
 	gather_all(machine, next, stride_words);
-	if (machine->wiring.advance == ADVANCE_COUNT)
+	if (machine->wiring.line.advance == ADVANCE_COUNT)
 		count_from_clears(machine, next, stride_words);
 }

@@ -12,27 +12,33 @@ struct machine *machine_create(struct arena *arena, const struct wiring *wiring,
 	if (machine->readers == NULL)
 		return NULL;
 	machine->wiring = *wiring;
-	machine->state_mask = ((uint32_t)1 << wiring->state_bits) - 1;
+	machine->state_mask = ((uint32_t)1 << wiring->line.state_bits) - 1;
 	for (size_t chip = 0; chip < wiring->chip_count; chip++)
-		chip_reader_init(&machine->readers[chip], &wiring->chips[chip], &images[chip], bank);
-	return machine;
+		chip_reader_init(&machine->readers[chip], wiring, chip, &images[chip], bank);
+	if (wiring->form == FORM_LOOP)
+		return machine;
+	machine->two = two_stages_create(arena, machine);
+	return machine->two != NULL ? machine : NULL;
 }
 
-struct row machine_row(const struct machine *machine, uint32_t state)
+struct row machine_row(const struct machine *machine, enum stage stage, uint32_t address)
 {
 	struct row row = {0};
-	uint32_t clear = 0;
+	uint32_t control = 0;
 	for (size_t chip = 0; chip < machine->wiring.chip_count; chip++) {
 		const struct chip_reader *reader = &machine->readers[chip];
-		const uint8_t *bytes = reader->bytes + chip_address(reader, state);
+		if (reader->stage != stage)
+			continue;
+		const uint8_t *bytes = reader->bytes + chip_address(reader, address);
 		for (unsigned lane = 0; lane < reader->width; lane++) {
 			row.next |= reader->next[lane][bytes[lane]];
+			row.kind |= reader->kind[lane][bytes[lane]];
 			row.levels |= reader->levels[lane][bytes[lane]];
-			clear |= reader->clear[lane][bytes[lane]];
+			control |= reader->control[lane][bytes[lane]];
 		}
 	}
-	row.next &= machine->state_mask;
-	row.clear = clear != 0;
+	row.clear = (control & CONTROL_CLEAR) != 0;
+	row.step = (control & CONTROL_STEP) != 0;
 	return row;
 }
 
@@ -44,7 +50,7 @@ static bool machine_clears(const struct machine *machine, uint32_t state)
 			continue;
 		const uint8_t *bytes = reader->bytes + chip_address(reader, state);
 		for (unsigned lane = 0; lane < reader->width; lane++)
-			if (reader->clear[lane][bytes[lane]] != 0)
+			if ((reader->control[lane][bytes[lane]] & CONTROL_CLEAR) != 0)
 				return true;
 	}
 	return false;
@@ -52,14 +58,14 @@ static bool machine_clears(const struct machine *machine, uint32_t state)
 
 uint32_t machine_settle(const struct machine *machine, uint32_t state)
 {
-	if (machine->wiring.advance != ADVANCE_COUNT || machine->wiring.clear != CLEAR_ASYNC)
-		return state;
-	return machine_clears(machine, state) ? 0 : state;
+	if (machine->two != NULL)
+		return two_stages_settle(machine->two, state);
+	return clears_at_once(&machine->wiring.line) && machine_clears(machine, state) ? 0 : state;
 }
 
 static uint32_t count_next(const struct machine *machine, uint32_t state)
 {
-	if (machine->wiring.clear == CLEAR_SYNC)
+	if (machine->wiring.line.clear == CLEAR_SYNC)
 		return machine_clears(machine, state) ? 0 : (state + 1) & machine->state_mask;
 	uint32_t settled = machine_settle(machine, state);
 	if (machine_clears(machine, settled))
@@ -69,7 +75,9 @@ static uint32_t count_next(const struct machine *machine, uint32_t state)
 
 uint32_t machine_next(const struct machine *machine, uint32_t state)
 {
-	if (machine->wiring.advance == ADVANCE_COUNT)
+	if (machine->two != NULL)
+		return two_stages_next(machine->two, state);
+	if (machine->wiring.line.advance == ADVANCE_COUNT)
 		return count_next(machine, state);
 	uint32_t next = 0;
 	for (size_t chip = 0; chip < machine->wiring.chip_count; chip++) {
@@ -80,10 +88,25 @@ uint32_t machine_next(const struct machine *machine, uint32_t state)
 		for (unsigned lane = 0; lane < reader->width; lane++)
 			next |= reader->next[lane][bytes[lane]];
 	}
-	return next & machine->state_mask;
+	return next;
 }
 
-size_t machine_address(const struct machine *machine, uint32_t state, size_t chip)
+bool machine_steps(const struct machine *machine, uint32_t state)
 {
-	return chip_address(&machine->readers[chip], state);
+	return machine->two != NULL && two_stages_steps(machine->two, state);
+}
+
+uint32_t machine_row_address(const struct machine *machine, enum stage stage, uint32_t state)
+{
+	if (machine->two == NULL)
+		return state;
+	const struct feedback feedback = feedback_of(&machine->wiring);
+	if (stage == STAGE_FRAME)
+		return state >> feedback.frame;
+	return (state & machine->state_mask) | two_stages_kind(machine->two, state) << machine->wiring.line.state_bits;
+}
+
+size_t machine_address(const struct machine *machine, uint32_t address, size_t chip)
+{
+	return chip_address(&machine->readers[chip], address);
 }

@@ -15,7 +15,9 @@ struct expression;
 struct part;
 struct catalogue;
 
-#define LIMIT_STATE_BITS 24
+#define LIMIT_STATE_BITS 24     // of a stage; with the kind bits where there are any
+#define LIMIT_FEEDBACK_BITS 26  // of a machine: everything that its latches and counters hold
+#define LIMIT_KIND_BITS 20
 #define LIMIT_LINES 1048576
 #define LIMIT_CELLS 16777216
 #define LIMIT_SIGNALS 64
@@ -59,6 +61,15 @@ enum role {
 // The role as plans write it ("burst gate"). Cannot fail.
 const char *role_name(enum role role);
 
+enum machine_form { FORM_LOOP, FORM_LINE_FRAME };
+
+// An EEPROM group with its latch or counter. A loop machine has the line stage alone.
+enum stage { STAGE_LINE, STAGE_FRAME };
+#define STAGE_COUNT 2
+
+// The stage as plans write it ("line"). Cannot fail.
+const char *stage_name(enum stage stage);
+
 enum signal_origin { FROM_DATA, FROM_FIELD };
 
 struct signal {
@@ -66,6 +77,7 @@ struct signal {
 	enum role role;
 	bool active_high;
 	int64_t lead_cells;           // may be negative
+	enum stage stage;             // STAGE_LINE in a loop machine
 	enum signal_origin origin;
 	size_t field;                 // FROM_FIELD: index into machine.fields
 	bool auto_codes;              // FROM_FIELD: the planner chooses
@@ -126,34 +138,48 @@ struct field {
 	struct place place;
 };
 
-struct machine_plan {
+struct stage_plan {
 	unsigned state_bits;          // 1 … 24
-	struct field *fields;
-	size_t field_count;
-	bool has_start;
-	uint32_t start;
 	enum outputs outputs;
 	enum advance advance;
 	enum clear_kind clear;        // meaningful with ADVANCE_COUNT
+	struct place place;           // of the number of state bits
+};
+
+struct machine_plan {
+	enum machine_form form;
+	struct stage_plan line;       // a loop machine's only stage
+	struct stage_plan frame;      // FORM_LINE_FRAME only
+	unsigned kind_bits;           // 0 for a loop machine
+	struct field *fields;         // of the line stage's state
+	size_t field_count;
+	bool has_start;               // the line stage's state in the frame's first cell (line-frame: in every line's first cell)
+	uint32_t start;
 	struct place place;
 	struct place start_place;
 };
 
-enum address_wire_kind { ADDRESS_OPEN, ADDRESS_LOW, ADDRESS_HIGH, ADDRESS_STATE, ADDRESS_BANK };
-enum data_wire_kind { DATA_OPEN, DATA_NEXT, DATA_CLEAR, DATA_SIGNAL };
+// How many stages a machine has. Cannot fail.
+unsigned machine_stages(const struct machine_plan *machine);
+// One of its stages. Cannot fail.
+const struct stage_plan *machine_stage(const struct machine_plan *machine, enum stage stage);
+
+enum address_wire_kind { ADDRESS_OPEN, ADDRESS_LOW, ADDRESS_HIGH, ADDRESS_STATE, ADDRESS_KIND, ADDRESS_BANK };
+enum data_wire_kind { DATA_OPEN, DATA_NEXT, DATA_KIND, DATA_STEP, DATA_CLEAR, DATA_SIGNAL };
 
 struct address_wire {
 	enum address_wire_kind kind;
-	unsigned index;               // state or bank bit
+	unsigned index;               // state, kind or bank bit
 };
 
 struct data_wire {
 	enum data_wire_kind kind;
-	unsigned index;               // next bit, or index of the signal
+	unsigned index;               // next or kind bit, or index of the signal
 };
 
 struct chip {
 	const char *label;
+	enum stage stage;             // whose address it sees
 	const struct part *part;      // the catalogue's or the plan's own
 	struct fraction access_s;     // access time in seconds
 	struct address_wire address[LIMIT_ADDRESS_PINS]; // A0 first; pins beyond the part's are ADDRESS_OPEN
@@ -163,9 +189,10 @@ struct chip {
 
 // Times of the parts around the EEPROM, in seconds.
 struct timing {
-	const char *latch_part, *counter_part, *decoder_part;
+	const char *latch_part, *decoder_part;
+	const char *counter_part[STAGE_COUNT];
 	struct fraction latch_delay_s, latch_setup_s;
-	struct fraction counter_delay_s, counter_setup_s;
+	struct fraction counter_delay_s[STAGE_COUNT], counter_setup_s[STAGE_COUNT];
 	struct fraction decoder_delay_s;
 	struct fraction share;        // of the shortest cell, 0 < share <= 1
 	struct fraction margin_s;

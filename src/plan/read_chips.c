@@ -184,7 +184,7 @@ static void hint_larger_part(struct reader *reader, const struct part *small, un
 
 static bool check_part_size(struct reader *reader, const struct node *node, const struct part *part)
 {
-	const unsigned bits = reader->plan->machine.state_bits;
+	const unsigned bits = reader->plan->machine.line.state_bits;
 	if (part->address_pins >= bits)
 		return true;
 	diagnose(reader->diagnostics, RULE_PART_TOO_SMALL, node->place, "part %s has %u address pins, but the state has %u bits",
@@ -195,17 +195,17 @@ static bool check_part_size(struct reader *reader, const struct node *node, cons
 
 static void wire_straight_address(const struct plan *plan, struct chip *chip)
 {
-	for (unsigned pin = 0; pin < plan->machine.state_bits; pin++)
+	for (unsigned pin = 0; pin < plan->machine.line.state_bits; pin++)
 		chip->address[pin] = (struct address_wire){ADDRESS_STATE, pin};
 }
 
 size_t word_of(const struct plan *plan, struct data_wire *word)
 {
 	size_t count = 0;
-	if (plan->machine.advance == ADVANCE_COUNT)
+	if (plan->machine.line.advance == ADVANCE_COUNT)
 		word[count++] = (struct data_wire){DATA_CLEAR, 0};
 	else
-		for (unsigned bit = 0; bit < plan->machine.state_bits; bit++)
+		for (unsigned bit = 0; bit < plan->machine.line.state_bits; bit++)
 			word[count++] = (struct data_wire){DATA_NEXT, bit};
 	for (size_t signal = 0; signal < plan->signal_count; signal++)
 		if (signal_is_data(&plan->signals[signal]))

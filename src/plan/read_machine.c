@@ -36,7 +36,7 @@ static void read_state_bits(struct reader *reader, const struct node *node)
 		         node->text);
 		return;
 	}
-	reader->plan->machine.state_bits = (unsigned)quantity.value.numerator;
+	reader->plan->machine.line.state_bits = (unsigned)quantity.value.numerator;
 }
 
 static void read_fields(struct reader *reader, const struct node *node)
@@ -58,8 +58,8 @@ static void read_fields(struct reader *reader, const struct node *node)
 		field->name = key->text;
 		field->place = key->place;
 		machine->field_count = index + 1;
-		if (check_identifier(reader, key, "field") && read_scalar(reader, value, "field", &text) && machine->state_bits > 0)
-			read_bits(reader, value, text, "field", machine->state_bits, &field->high, &field->low);
+		if (check_identifier(reader, key, "field") && read_scalar(reader, value, "field", &text) && machine->line.state_bits > 0)
+			read_bits(reader, value, text, "field", machine->line.state_bits, &field->high, &field->low);
 	}
 }
 
@@ -67,7 +67,7 @@ static void read_start(struct reader *reader, const struct node *node)
 {
 	struct machine_plan *machine = &reader->plan->machine;
 	int64_t start;
-	if (machine->state_bits == 0 || !read_whole(reader, node, "start", 0, ((int64_t)1 << machine->state_bits) - 1, &start))
+	if (machine->line.state_bits == 0 || !read_whole(reader, node, "start", 0, ((int64_t)1 << machine->line.state_bits) - 1, &start))
 		return;
 	machine->has_start = true;
 	machine->start = (uint32_t)start;
@@ -83,12 +83,12 @@ static void read_advance(struct reader *reader, const struct node *advance, cons
 	bool known = true;
 	if (advance != NULL) {
 		known = read_choice(reader, advance, "advance", advances, COUNT_OF(advances), &choice);
-		machine->advance = known ? (enum advance)choice : ADVANCE_TABLE;
+		machine->line.advance = known ? (enum advance)choice : ADVANCE_TABLE;
 	}
 	if (clear == NULL || !read_choice(reader, clear, "clear", clears, COUNT_OF(clears), &choice))
 		return;
-	machine->clear = (enum clear_kind)choice;
-	if (known && machine->advance == ADVANCE_TABLE) {
+	machine->line.clear = (enum clear_kind)choice;
+	if (known && machine->line.advance == ADVANCE_TABLE) {
 		diagnose(reader->diagnostics, RULE_CLEAR_WITHOUT_COUNT, clear->place, "clear is for a counter, but this machine advances by table");
 		diagnose_hint(reader->diagnostics, "add advance: count, or leave clear out");
 	}
@@ -136,8 +136,23 @@ void read_machine(struct reader *reader, const struct node *node)
 	size_t choice;
 	if (values[MACHINE_OUTPUTS] != NULL &&
 	    read_choice(reader, values[MACHINE_OUTPUTS], "outputs", outputs, COUNT_OF(outputs), &choice))
-		machine->outputs = (enum outputs)choice;
+		machine->line.outputs = (enum outputs)choice;
 	read_advance(reader, values[MACHINE_ADVANCE], values[MACHINE_CLEAR]);
+}
+
+const char *stage_name(enum stage stage)
+{
+	return stage == STAGE_LINE ? "line" : "frame";
+}
+
+unsigned machine_stages(const struct machine_plan *machine)
+{
+	return machine->form == FORM_LINE_FRAME ? STAGE_COUNT : 1;
+}
+
+const struct stage_plan *machine_stage(const struct machine_plan *machine, enum stage stage)
+{
+	return stage == STAGE_LINE ? &machine->line : &machine->frame;
 }
 
 uint32_t field_mask(const struct field *field)

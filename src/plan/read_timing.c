@@ -74,16 +74,16 @@ static const struct logic_part *read_logic(struct reader *reader, const struct n
 static void read_logic_parts(struct reader *reader, const struct node *const *values)
 {
 	struct timing *timing = &reader->plan->timing;
-	const bool async = reader->plan->machine.clear == CLEAR_ASYNC;
+	const bool async = reader->plan->machine.line.clear == CLEAR_ASYNC;
 	const struct logic_part *latch = read_logic(reader, values[TIMING_LATCH], LOGIC_LATCH, "74HC574");
 	const struct logic_part *counter = read_logic(reader, values[TIMING_COUNTER], LOGIC_COUNTER, async ? "74HC161" : "74HC163");
 	const struct logic_part *decoder = read_logic(reader, values[TIMING_DECODER], LOGIC_DECODER, "74HC138");
 	timing->latch_part = latch->name;
 	timing->latch_delay_s = latch->delay_s;
 	timing->latch_setup_s = latch->setup_s;
-	timing->counter_part = counter->name;
-	timing->counter_delay_s = counter->delay_s;
-	timing->counter_setup_s = counter->setup_s;
+	timing->counter_part[STAGE_LINE] = counter->name;
+	timing->counter_delay_s[STAGE_LINE] = counter->delay_s;
+	timing->counter_setup_s[STAGE_LINE] = counter->setup_s;
 	timing->decoder_part = decoder->name;
 	timing->decoder_delay_s = decoder->delay_s;
 }
@@ -118,7 +118,7 @@ void read_timing(struct reader *reader, const struct node *node)
 	read_logic_parts(reader, values);
 	struct fraction *const overrides[TIMING_KEYS] = {
 		[TIMING_LATCH_DELAY] = &timing->latch_delay_s,     [TIMING_LATCH_SETUP] = &timing->latch_setup_s,
-		[TIMING_COUNTER_DELAY] = &timing->counter_delay_s, [TIMING_COUNTER_SETUP] = &timing->counter_setup_s,
+		[TIMING_COUNTER_DELAY] = &timing->counter_delay_s[STAGE_LINE], [TIMING_COUNTER_SETUP] = &timing->counter_setup_s[STAGE_LINE],
 		[TIMING_DECODER_DELAY] = &timing->decoder_delay_s, [TIMING_MARGIN] = &timing->margin_s,
 	};
 	for (size_t key = 0; key < TIMING_KEYS; key++)
@@ -141,7 +141,7 @@ static bool read_sweep_bits(struct reader *reader, const struct node *node, stru
 		diagnose(reader->diagnostics, RULE_OUT_OF_MEMORY, node->place, "memory is out");
 		return false;
 	}
-	struct field whole = {.high = machine->state_bits - 1, .low = 0};
+	struct field whole = {.high = machine->line.state_bits - 1, .low = 0};
 	if (strcmp(name, "state") != 0) {
 		const size_t field = find_field(reader->plan, name);
 		if (field == SIZE_MAX) {

@@ -41,7 +41,7 @@ static void add_numbered(struct wire_names *wires, const char *word, unsigned bi
 
 static void add_address_names(const struct plan *plan, struct wire_names *wires)
 {
-	add_numbered(wires, "state", plan->machine.state_bits);
+	add_numbered(wires, "state", plan->machine.line.state_bits);
 	add_numbered(wires, "bank", LIMIT_BANK_BITS);
 	wires->names[wires->count++] = "low";
 	wires->names[wires->count++] = "high";
@@ -49,10 +49,10 @@ static void add_address_names(const struct plan *plan, struct wire_names *wires)
 
 static void add_data_names(const struct plan *plan, struct wire_names *wires)
 {
-	if (plan->machine.advance == ADVANCE_COUNT)
+	if (plan->machine.line.advance == ADVANCE_COUNT)
 		wires->names[wires->count++] = "clear";
 	else
-		add_numbered(wires, "next", plan->machine.state_bits);
+		add_numbered(wires, "next", plan->machine.line.state_bits);
 	for (size_t signal = 0; signal < plan->signal_count; signal++)
 		if (signal_is_data(&plan->signals[signal]))
 			wires->names[wires->count++] = plan->signals[signal].name;
@@ -103,7 +103,7 @@ static bool parse_address_wire(struct reader *reader, const struct node *node, u
 		*wire = (struct address_wire){ADDRESS_LOW, 0};
 	else if (strcmp(text, "high") == 0)
 		*wire = (struct address_wire){ADDRESS_HIGH, 0};
-	else if (parse_numbered(text, "state", &number) && number < reader->plan->machine.state_bits)
+	else if (parse_numbered(text, "state", &number) && number < reader->plan->machine.line.state_bits)
 		*wire = (struct address_wire){ADDRESS_STATE, number};
 	else if (parse_numbered(text, "bank", &number) && number < LIMIT_BANK_BITS)
 		*wire = (struct address_wire){ADDRESS_BANK, number};
@@ -111,7 +111,7 @@ static bool parse_address_wire(struct reader *reader, const struct node *node, u
 		diagnose(reader->diagnostics, RULE_NOT_YET, node->place, "A%u: \"%s\" belongs to line-frame machines, which this version does not carry out yet", pin, text);
 		return false;
 	} else if (parse_numbered(text, "state", &number)) {
-		report_beyond(reader, node, "A", pin, "state", reader->plan->machine.state_bits);
+		report_beyond(reader, node, "A", pin, "state", reader->plan->machine.line.state_bits);
 		return false;
 	} else if (parse_numbered(text, "bank", &number)) {
 		report_beyond(reader, node, "A", pin, "bank", LIMIT_BANK_BITS);
@@ -126,7 +126,7 @@ static bool parse_address_wire(struct reader *reader, const struct node *node, u
 static bool parse_data_wire(struct reader *reader, const struct node *node, unsigned pin, struct data_wire *wire)
 {
 	const struct plan *plan = reader->plan;
-	const bool counted = plan->machine.advance == ADVANCE_COUNT;
+	const bool counted = plan->machine.line.advance == ADVANCE_COUNT;
 	const char *text;
 	unsigned number;
 	if (!read_scalar(reader, node, "data", &text))
@@ -138,7 +138,7 @@ static bool parse_data_wire(struct reader *reader, const struct node *node, unsi
 		*wire = (struct data_wire){DATA_SIGNAL, (unsigned)signal};
 	else if (counted && strcmp(text, "clear") == 0)
 		*wire = (struct data_wire){DATA_CLEAR, 0};
-	else if (!counted && parse_numbered(text, "next", &number) && number < plan->machine.state_bits)
+	else if (!counted && parse_numbered(text, "next", &number) && number < plan->machine.line.state_bits)
 		*wire = (struct data_wire){DATA_NEXT, number};
 	else if (strcmp(text, "step") == 0 || parse_numbered(text, "kind", &number)) {
 		diagnose(reader->diagnostics, RULE_NOT_YET, node->place, "D%u: \"%s\" belongs to line-frame machines, which this version does not carry out yet", pin, text);
@@ -147,7 +147,7 @@ static bool parse_data_wire(struct reader *reader, const struct node *node, unsi
 		diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place, "D%u: signal \"%s\" comes from a field of the state and has no bit in the word", pin, text);
 		return false;
 	} else if (!counted && parse_numbered(text, "next", &number)) {
-		report_beyond(reader, node, "D", pin, "next", plan->machine.state_bits);
+		report_beyond(reader, node, "D", pin, "next", plan->machine.line.state_bits);
 		return false;
 	} else {
 		report_unknown_wire(reader, node, false, pin, counted ? "clear and the names of data signals" : "next.N and the names of data signals");
@@ -209,7 +209,7 @@ static void report_doubled_address(struct reader *reader, const struct node *nod
 	struct missing missing = {.count = 0};
 	diagnose(reader->diagnostics, RULE_WIRE_DOUBLED, node->items[pin]->place, "A%u: \"%s\" is on A%u of this chip already", pin,
 	         node->items[pin]->text, first);
-	for (unsigned bit = 0; all_known && bit < reader->plan->machine.state_bits; bit++)
+	for (unsigned bit = 0; all_known && bit < reader->plan->machine.line.state_bits; bit++)
 		if (address_pin_of(chip, (struct address_wire){ADDRESS_STATE, bit}) == LIMIT_ADDRESS_PINS)
 			add_missing(&missing, "state", bit);
 	hint_missing(reader, &missing, "address pin of this chip");
@@ -244,7 +244,7 @@ void read_address_wires(struct reader *reader, const struct node *node, struct c
 	}
 	if (!check_address_doubled(reader, node, chip, all_known) || !all_known)
 		return;
-	for (unsigned bit = 0; bit < plan->machine.state_bits; bit++)
+	for (unsigned bit = 0; bit < plan->machine.line.state_bits; bit++)
 		if (address_pin_of(chip, (struct address_wire){ADDRESS_STATE, bit}) == LIMIT_ADDRESS_PINS)
 			diagnose(reader->diagnostics, RULE_WIRE_MISSING, node->place, "state.%u is on no address pin of chip \"%s\"", bit,
 			         chip->label != NULL ? chip->label : "");

@@ -60,7 +60,7 @@ static void blame_bits(const struct trial *trial, enum data_wire_kind kind, uint
 
 static enum data_wire_kind next_kind(const struct trial *trial)
 {
-	return trial->wiring.advance == ADVANCE_COUNT ? DATA_CLEAR : DATA_NEXT;
+	return trial->wiring.line.advance == ADVANCE_COUNT ? DATA_CLEAR : DATA_NEXT;
 }
 
 struct counterexample blame_next(const struct trial *trial, uint32_t cell, uint32_t wrong_bits)
@@ -68,8 +68,8 @@ struct counterexample blame_next(const struct trial *trial, uint32_t cell, uint3
 	struct counterexample found = {.present = true, .bank = trial->bank, .cell = cell, .signal = SIZE_MAX};
 	found.state = trial->lap.states[cell];
 	// An asynchronous clear is read in the row that the counter passes through after the cell.
-	if (trial->wiring.advance == ADVANCE_COUNT && trial->wiring.clear == CLEAR_ASYNC)
-		found.state = (found.state + 1) & (((uint32_t)1 << trial->wiring.state_bits) - 1);
+	if (trial->wiring.line.advance == ADVANCE_COUNT && trial->wiring.line.clear == CLEAR_ASYNC)
+		found.state = (found.state + 1) & (((uint32_t)1 << trial->wiring.line.state_bits) - 1);
 	blame_bits(trial, next_kind(trial), wrong_bits, &found);
 	return found;
 }
@@ -79,7 +79,7 @@ struct counterexample blame_pin(const struct trial *trial, uint32_t cell, size_t
 	const struct plan *plan = trial->timeline->plan;
 	struct counterexample found = {.present = true, .bank = trial->bank, .cell = cell, .signal = signal};
 	bool decoded = plan->signals[signal].origin == FROM_FIELD;
-	bool row_before = decoded || trial->wiring.outputs == OUTPUTS_REGISTERED;
+	bool row_before = decoded || trial->wiring.line.outputs == OUTPUTS_REGISTERED;
 	found.state = trial->lap.states[row_before ? cell_before(trial, cell) : cell];
 	if (decoded)
 		blame_bits(trial, next_kind(trial), field_mask(&plan->machine.fields[plan->signals[signal].field]), &found);

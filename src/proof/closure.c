@@ -42,7 +42,7 @@ static bool find_repeat(const struct trial *trial, uint32_t *cell, uint32_t *use
 {
 	const struct lap *lap = &trial->lap;
 	const uint32_t cells = trial->timeline->cell_count;
-	uint32_t *used = arena_array(trial->arena, (size_t)1 << trial->wiring.state_bits, sizeof *used);
+	uint32_t *used = arena_array(trial->arena, (size_t)1 << trial->wiring.line.state_bits, sizeof *used);
 	*memory_out = used == NULL;
 	for (uint32_t index = 0; used != NULL && index < cells; index++) {
 		used[lap->states[index]] = index + 1;

@@ -29,8 +29,8 @@ static bool many_wrong_cells(const struct trial *trial)
 static bool passes(const struct trial *trial, uint32_t start)
 {
 	const uint32_t cells = trial->timeline->cell_count;
-	const uint64_t inverted = levels_of(trial->timeline->plan, 0), data = trial->wiring.data_signals;
-	const bool registered = trial->wiring.outputs == OUTPUTS_REGISTERED;
+	const uint64_t inverted = levels_of(trial->timeline->plan, 0), data = trial->wiring.line.data_signals;
+	const bool registered = trial->wiring.line.outputs == OUTPUTS_REGISTERED;
 	uint64_t known = 0;
 	for (size_t index = 0; index < trial->decoders->count; index++)
 		known |= (uint64_t)trial->decoders->list[index].known << trial->decoders->list[index].signal;
@@ -38,7 +38,7 @@ static bool passes(const struct trial *trial, uint32_t start)
 	uint32_t state = first;
 	for (uint32_t cell = 0; cell < cells; cell++) {
 		const uint32_t shown_at = !registered ? cell : cell + 1 == cells ? 0 : cell + 1;
-		const uint64_t pins = (machine_row(trial->machine, state).levels ^ inverted) & data;
+		const uint64_t pins = (machine_row(trial->machine, STAGE_LINE, state).levels ^ inverted) & data;
 		const uint64_t decoded = decoders_pins(trial->decoders, state);
 		if (pins != (trial->expected[shown_at] & data) || decoded != (trial->expected[cell] & known) ||
 		    wrong_held_bits(trial, cell, state) != 0)
@@ -102,7 +102,7 @@ static size_t count_pairs(const struct trial *trial)
 bool find_exchange(const struct trial *trial, const char **hint)
 {
 	const struct chip *chips = trial->wiring.chips;
-	const bool search = !trial->has_start && count_pairs(trial) <= SEARCHED_STATES >> trial->wiring.state_bits;
+	const bool search = !trial->has_start && count_pairs(trial) <= SEARCHED_STATES >> trial->wiring.line.state_bits;
 	bool tried = true, right_lap = false;
 	*hint = NULL;
 	for (size_t right = 1; tried && right < trial->wiring.chip_count; right++) {

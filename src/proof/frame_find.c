@@ -36,7 +36,7 @@ struct finder {
 // Lists the loop that state 0 falls into: the walk there from the first state that comes up again.
 static bool list_loop(struct finder *finder)
 {
-	size_t states = (size_t)1 << finder->wiring->state_bits;
+	size_t states = (size_t)1 << finder->wiring->line.state_bits;
 	uint32_t *seen = arena_array(finder->arena, states, sizeof *seen);
 	uint32_t *walk = arena_array(finder->arena, states, sizeof *walk);
 	if (seen == NULL || walk == NULL)
@@ -57,15 +57,15 @@ static bool read_pins(struct finder *finder, const struct decoders *decoders)
 	if (finder->pins == NULL)
 		return false;
 	const uint64_t inverted = levels_of(finder->timeline->plan, 0);
-	finder->compared = finder->wiring->data_signals;
+	finder->compared = finder->wiring->line.data_signals;
 	for (size_t index = 0; index < decoders->count; index++)
 		finder->compared |= (uint64_t)decoders->list[index].known << decoders->list[index].signal;
 	for (uint32_t index = 0; index < finder->length; index++) {
-		uint64_t levels = machine_row(finder->machine, finder->states[index]).levels;
+		uint64_t levels = machine_row(finder->machine, STAGE_LINE, finder->states[index]).levels;
 		uint32_t shown_at = index;
-		if (finder->wiring->outputs == OUTPUTS_REGISTERED)
+		if (finder->wiring->line.outputs == OUTPUTS_REGISTERED)
 			shown_at = index + 1 == finder->length ? 0 : index + 1;
-		finder->pins[shown_at] |= (levels ^ inverted) & finder->wiring->data_signals;
+		finder->pins[shown_at] |= (levels ^ inverted) & finder->wiring->line.data_signals;
 		finder->pins[index] |= decoders_pins(decoders, finder->states[index]);
 	}
 	return true;
@@ -151,7 +151,7 @@ static bool choose_anchor(struct finder *finder)
 	for (uint32_t cell = 0; cell < timeline->cell_count; cell++)
 		if (timeline->hold_mask[cell] != mask && bit_count(timeline->hold_mask[cell]) > bit_count(mask))
 			mask = timeline->hold_mask[cell];
-	uint32_t *uses = arena_array(finder->arena, (size_t)1 << finder->wiring->state_bits, sizeof *uses);
+	uint32_t *uses = arena_array(finder->arena, (size_t)1 << finder->wiring->line.state_bits, sizeof *uses);
 	if (uses == NULL)
 		return false;
 	for (uint32_t index = 0; index < finder->length; index++)
@@ -254,7 +254,7 @@ struct most_led_to {
 
 static bool find_most_led_to(struct finder *finder, struct most_led_to *most)
 {
-	const size_t states = (size_t)1 << finder->wiring->state_bits;
+	const size_t states = (size_t)1 << finder->wiring->line.state_bits;
 	uint32_t *next = arena_array(finder->arena, states, sizeof *next);
 	uint32_t *counts = arena_array(finder->arena, states, sizeof *counts);
 	if (next == NULL || counts == NULL)

@@ -42,9 +42,9 @@ static bool memo_flickers(struct search *search, uint32_t from, uint32_t to, uin
 // before the edge if there is none.
 static uint32_t passing_state(const struct trial *trial, uint32_t from, uint32_t to)
 {
-	if (trial->wiring.advance != ADVANCE_COUNT || trial->wiring.clear != CLEAR_ASYNC)
+	if (trial->wiring.line.advance != ADVANCE_COUNT || trial->wiring.line.clear != CLEAR_ASYNC)
 		return from;
-	uint32_t counted = (from + 1) & (uint32_t)(((uint64_t)1 << trial->wiring.state_bits) - 1);
+	uint32_t counted = (from + 1) & (uint32_t)(((uint64_t)1 << trial->wiring.line.state_bits) - 1);
 	return counted == to ? from : counted;
 }
 
@@ -163,7 +163,7 @@ static bool search_all(struct trial *trial)
 static struct fraction unsettled(const struct trial *trial, struct fraction answer_s)
 {
 	const struct timing *timing = &trial->timeline->plan->timing;
-	const struct fraction delay_s = trial->wiring.advance == ADVANCE_COUNT ? timing->counter_delay_s : timing->latch_delay_s;
+	const struct fraction delay_s = trial->wiring.line.advance == ADVANCE_COUNT ? timing->counter_delay_s[STAGE_LINE] : timing->latch_delay_s;
 	// Nanoseconds of data sheets: far from 64 bits. Should they not fit, the answer alone stands.
 	struct fraction sum_s = answer_s;
 	fraction_add(delay_s, answer_s, &sum_s);
@@ -208,9 +208,9 @@ bool prove_glitches(struct trial *trial)
 	result->has_field_signals = trial->decoders->count > 0;
 	if (result->has_field_signals)
 		result->settle_s = unsettled(trial, trial->timeline->plan->timing.decoder_delay_s);
-	if (trial->wiring.outputs == OUTPUTS_DIRECT)
+	if (trial->wiring.line.outputs == OUTPUTS_DIRECT)
 		measure_direct(trial, result);
-	if (trial->wiring.advance == ADVANCE_COUNT && trial->wiring.clear == CLEAR_ASYNC)
+	if (trial->wiring.line.advance == ADVANCE_COUNT && trial->wiring.line.clear == CLEAR_ASYNC)
 		measure_clear(trial, result);
 	if (!result->has_field_signals && !result->direct && !result->async_clear)
 		trial->proofs->proof[PROOF_GLITCHES].verdict = VERDICT_ABSENT;

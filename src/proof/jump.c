@@ -10,7 +10,7 @@
 // How many states that are not spare lead to each state, at most 2. A spare state is one that leads to the first.
 static uint8_t *count_predecessors(const struct trial *trial, const uint32_t *next)
 {
-	const size_t states = (size_t)1 << trial->wiring.state_bits;
+	const size_t states = (size_t)1 << trial->wiring.line.state_bits;
 	uint8_t *counts = arena_array(trial->arena, states, sizeof *counts);
 	for (size_t state = 0; counts != NULL && state < states; state++)
 		if (next[state] != trial->lap.states[0] && counts[next[state]] < 2)
@@ -22,7 +22,7 @@ static uint8_t *count_predecessors(const struct trial *trial, const uint32_t *ne
 // more than one.
 static bool find_orphan(const struct trial *trial, const uint32_t *next, const uint8_t *counts, uint32_t *orphan)
 {
-	const size_t states = (size_t)1 << trial->wiring.state_bits;
+	const size_t states = (size_t)1 << trial->wiring.line.state_bits;
 	const uint32_t first = trial->lap.states[0];
 	size_t found = 0;
 	for (size_t state = 0; state < states && found < 2; state++) {
@@ -54,7 +54,7 @@ struct search {
 
 static size_t count_leading_on(const struct trial *trial, const uint32_t *next)
 {
-	const size_t states = (size_t)1 << trial->wiring.state_bits;
+	const size_t states = (size_t)1 << trial->wiring.line.state_bits;
 	size_t count = 0;
 	for (size_t state = 0; state < states; state++)
 		count += next[state] != trial->lap.states[0];
@@ -92,10 +92,10 @@ static bool mends(const struct search *search, uint32_t state, uint32_t successo
 
 bool find_jump(const struct trial *trial, struct counterexample *found, bool *certain)
 {
-	const size_t states = (size_t)1 << trial->wiring.state_bits;
+	const size_t states = (size_t)1 << trial->wiring.line.state_bits;
 	uint32_t orphan = 0, cell = found->cell;
 	*certain = false;
-	if (trial->wiring.advance != ADVANCE_TABLE)
+	if (trial->wiring.line.advance != ADVANCE_TABLE)
 		return true;
 	uint32_t *next = arena_array(trial->arena, states, sizeof *next);
 	if (next == NULL)

@@ -17,14 +17,14 @@ bool lap_run(struct trial *trial, uint32_t start)
 		return false;
 	struct lap *lap = &trial->lap;
 	const uint32_t cells = trial->timeline->cell_count;
-	const uint64_t data = trial->wiring.data_signals, inverted = levels_of(trial->timeline->plan, 0);
-	const bool registered = trial->wiring.outputs == OUTPUTS_REGISTERED;
-	const bool counts = trial->wiring.advance == ADVANCE_COUNT;
+	const uint64_t data = trial->wiring.line.data_signals, inverted = levels_of(trial->timeline->plan, 0);
+	const bool registered = trial->wiring.line.outputs == OUTPUTS_REGISTERED;
+	const bool counts = trial->wiring.line.advance == ADVANCE_COUNT;
 	const uint32_t first = machine_settle(trial->machine, start);
 	uint32_t state = first;
 	lap->return_cells = 0;
 	for (uint32_t cell = 0; cell < cells; cell++) {
-		struct row row = machine_row(trial->machine, state);
+		struct row row = machine_row(trial->machine, STAGE_LINE, state);
 		uint32_t shown_at = !registered ? cell : cell + 1 == cells ? 0 : cell + 1;
 		lap->states[cell] = state;
 		lap->pins[shown_at] = (row.levels ^ inverted) & data;

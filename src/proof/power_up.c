@@ -22,9 +22,9 @@ static void note_longest(struct trial *trial, struct power_up_result *result)
 // The states that a counter with an async clear passes through in no time.
 static uint64_t count_cleared(const struct trial *trial)
 {
-	const uint32_t states = (uint32_t)1 << trial->wiring.state_bits;
+	const uint32_t states = (uint32_t)1 << trial->wiring.line.state_bits;
 	uint64_t count = 0;
-	if (trial->wiring.advance == ADVANCE_COUNT && trial->wiring.clear == CLEAR_ASYNC)
+	if (trial->wiring.line.advance == ADVANCE_COUNT && trial->wiring.line.clear == CLEAR_ASYNC)
 		for (uint32_t state = 0; state < states; state++)
 			count += machine_settle(trial->machine, state) != state;
 	return count;
@@ -50,7 +50,7 @@ bool prove_power_up(struct trial *trial)
 	trial->ways = ways_find(trial->arena, trial->machine, &trial->wiring, trial->lap.states, trial->lap.return_cells);
 	if (trial->ways == NULL)
 		return false;
-	result->states += (uint64_t)1 << trial->wiring.state_bits;
+	result->states += (uint64_t)1 << trial->wiring.line.state_bits;
 	result->cleared_states += count_cleared(trial);
 	if (trial->lap.return_cells > result->frame_states)
 		result->frame_states = trial->lap.return_cells;

@@ -33,7 +33,7 @@ static const char *pin_words(const struct trial *trial, uint32_t cell, size_t in
 
 uint32_t first_judged_cell(const struct trial *trial)
 {
-	return trial->lap.closed || trial->wiring.outputs == OUTPUTS_DIRECT ? 0 : 1;
+	return trial->lap.closed || trial->wiring.line.outputs == OUTPUTS_DIRECT ? 0 : 1;
 }
 
 // The first cell with a wrong pin; UINT32_MAX if there is none.
@@ -114,7 +114,7 @@ uint32_t signals_first_cell(const struct trial *trial)
 // first cell off the way is stored in the row that leads there.
 static bool is_astray(const struct trial *trial, uint32_t cell, const struct counterexample *found)
 {
-	const bool row_of_cell = found->signal != SIZE_MAX && trial->lap.states[cell] == found->state && trial->wiring.outputs == OUTPUTS_DIRECT;
+	const bool row_of_cell = found->signal != SIZE_MAX && trial->lap.states[cell] == found->state && trial->wiring.line.outputs == OUTPUTS_DIRECT;
 	return cell > trial->departed_cell || (cell == trial->departed_cell && row_of_cell);
 }
 

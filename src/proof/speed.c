@@ -19,11 +19,11 @@ static struct fraction larger(struct fraction left, struct fraction right)
 // What must be stable before the next edge: the latch's inputs, the counter's clear, or both.
 static struct fraction setup_of(const struct wiring *wiring, const struct timing *timing)
 {
-	if (wiring->advance == ADVANCE_TABLE)
+	if (wiring->line.advance == ADVANCE_TABLE)
 		return timing->latch_setup_s;
-	if (wiring->outputs == OUTPUTS_REGISTERED)
-		return larger(timing->counter_setup_s, timing->latch_setup_s);
-	return timing->counter_setup_s;
+	if (wiring->line.outputs == OUTPUTS_REGISTERED)
+		return larger(timing->counter_setup_s[STAGE_LINE], timing->latch_setup_s);
+	return timing->counter_setup_s[STAGE_LINE];
 }
 
 // False if a figure does not fit 64 bits.
@@ -31,13 +31,13 @@ static bool measure(const struct trial *trial, struct speed_result *result)
 {
 	const struct plan *plan = trial->timeline->plan;
 	const struct timing *timing = &plan->timing;
-	const bool counts = trial->wiring.advance == ADVANCE_COUNT;
+	const bool counts = trial->wiring.line.advance == ADVANCE_COUNT;
 	result->slowest_chip = slowest_chip(&trial->wiring);
-	result->delay_s = counts ? timing->counter_delay_s : timing->latch_delay_s;
+	result->delay_s = counts ? timing->counter_delay_s[STAGE_LINE] : timing->latch_delay_s;
 	result->access_s = trial->wiring.chips[result->slowest_chip].access_s;
 	result->setup_s = setup_of(&trial->wiring, timing);
 	result->margin_s = timing->margin_s;
-	result->second_pass = counts && trial->wiring.clear == CLEAR_ASYNC;
+	result->second_pass = counts && trial->wiring.line.clear == CLEAR_ASYNC;
 	struct fraction pass_s, needed_s;
 	if (!fraction_divide(fraction_whole(trial->lap.shortest_ticks), plan->clock.master_hz, &result->cell_s) ||
 	    !fraction_multiply(timing->share, result->cell_s, &result->available_s) ||

@@ -63,14 +63,14 @@ static uint32_t slip_of(uint32_t entry, uint32_t cell, uint32_t cells, uint32_t 
 static void upset_state(const struct trial *trial, struct tally *tally, uint32_t state, uint32_t cell)
 {
 	const uint32_t period = trial->lap.return_cells;
-	for (unsigned bit = 0; bit < trial->wiring.state_bits; bit++) {
+	for (unsigned bit = 0; bit < trial->wiring.line.state_bits; bit++) {
 		struct way way = ways_of(trial->ways, state ^ (uint32_t)1 << bit);
 		if (way.lost)
 			tally_lost(tally, cell, bit);
 		else
 			tally_regained(tally, cell, bit, way.cells, slip_of(way.entry, cell, way.cells, period));
 	}
-	tally->result->upsets += trial->wiring.state_bits;
+	tally->result->upsets += trial->wiring.line.state_bits;
 }
 
 // All states of the frame: in their order around it, or, where it fills much of the state space, in ascending order, in
@@ -78,8 +78,8 @@ static void upset_state(const struct trial *trial, struct tally *tally, uint32_t
 // state.
 static void upset_frame(const struct trial *trial, struct tally *tally)
 {
-	const uint32_t period = trial->lap.return_cells, states = (uint32_t)1 << trial->wiring.state_bits;
-	const bool passes = trial->wiring.advance == ADVANCE_COUNT && trial->wiring.clear == CLEAR_ASYNC;
+	const uint32_t period = trial->lap.return_cells, states = (uint32_t)1 << trial->wiring.line.state_bits;
+	const bool passes = trial->wiring.line.advance == ADVANCE_COUNT && trial->wiring.line.clear == CLEAR_ASYNC;
 	if (period < states / 16 || passes) {
 		for (uint32_t cell = 0; cell < period; cell++)
 			upset_state(trial, tally, trial->lap.states[cell], cell);

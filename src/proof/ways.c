@@ -268,10 +268,10 @@ static struct chase *chase_create(struct arena *arena, uint32_t states)
 struct ways *ways_find(struct arena *arena, const struct machine *machine, const struct wiring *wiring,
                        const uint32_t *frame_states, uint32_t frame_count)
 {
-	struct chase *chase = chase_create(arena, (uint32_t)1 << wiring->state_bits);
+	struct chase *chase = chase_create(arena, (uint32_t)1 << wiring->line.state_bits);
 	if (chase == NULL)
 		return NULL;
-	const bool passes = wiring->advance == ADVANCE_COUNT && wiring->clear == CLEAR_ASYNC;
+	const bool passes = wiring->line.advance == ADVANCE_COUNT && wiring->line.clear == CLEAR_ASYNC;
 	machine_all_next(machine, &chase->records[0].subject, sizeof *chase->records / sizeof(uint32_t));
 	if (passes)
 		mark_passing(chase, machine);

@@ -121,7 +121,7 @@ bool constraints_create(struct constraints *constraints, struct arena *arena, co
                         const uint64_t *pins, uint32_t period)
 {
 	const struct plan *plan = timeline->plan;
-	const uint32_t state_count = (uint32_t)1 << plan->machine.state_bits;
+	const uint32_t state_count = (uint32_t)1 << plan->machine.line.state_bits;
 	*constraints = (struct constraints){.timeline = timeline,
 	                                    .plan = plan,
 	                                    .pins = pins,

@@ -115,7 +115,7 @@ bool count_states(const struct constraints *constraints, struct arena *arena, ui
                   struct faults *faults)
 {
 	const struct plan *plan = constraints->plan;
-	const uint32_t needed = constraints->period + (plan->machine.clear == CLEAR_ASYNC);
+	const uint32_t needed = constraints->period + (plan->machine.line.clear == CLEAR_ASYNC);
 	if (needed > constraints->state_count) {
 		struct fault fault = fault_at(RULE_COUNTER_SHORT, NO_CELL);
 		fault.needed = needed;

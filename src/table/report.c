@@ -111,7 +111,7 @@ static void report_states_short(const struct reporter *reporter, const struct fa
 	if (fault->cell == NO_CELL) {
 		diagnose(reporter->diagnostics, RULE_STATES_SHORT, reporter->plan->machine.place,
 		         "the frame needs %u states, one for each cell, but %u bits of state have %u", fault->needed,
-		         reporter->plan->machine.state_bits, fault->available);
+		         reporter->plan->machine.line.state_bits, fault->available);
 		hint_bits(reporter, fault->needed);
 		return;
 	}
@@ -124,7 +124,7 @@ static void report_state_shared(const struct reporter *reporter, const struct fa
 {
 	diagnose(reporter->diagnostics, RULE_STATE_SHARED, hold_place(reporter, fault->cell),
 	         "%s, and %s, are held to one state, 0x%0*X, but their rows differ", cell_words(reporter, fault->cell),
-	         cell_words(reporter, fault->other), (int)(reporter->plan->machine.state_bits + 3) / 4, fault->state);
+	         cell_words(reporter, fault->other), (int)(reporter->plan->machine.line.state_bits + 3) / 4, fault->state);
 	diagnose_also(reporter->diagnostics, hold_place(reporter, fault->other), "the second of the two is held here");
 	diagnose_hint(reporter->diagnostics, "hold a further field that tells the cells apart, or leave some bits free");
 }
@@ -374,10 +374,10 @@ static void report_counted_conflict(const struct reporter *reporter, const struc
 
 static void report_counter_short(const struct reporter *reporter, const struct fault *fault)
 {
-	const bool passing = reporter->plan->machine.clear == CLEAR_ASYNC;
+	const bool passing = reporter->plan->machine.line.clear == CLEAR_ASYNC;
 	diagnose(reporter->diagnostics, RULE_COUNTER_SHORT, reporter->plan->machine.place,
 	         "the frame needs %u states%s, but a counter of %u bits has %u", fault->needed,
-	         passing ? ", one of them to clear the counter in" : "", reporter->plan->machine.state_bits,
+	         passing ? ", one of them to clear the counter in" : "", reporter->plan->machine.line.state_bits,
 	         fault->available);
 	hint_bits(reporter, fault->needed);
 }

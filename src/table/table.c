@@ -15,7 +15,7 @@ static bool solve_period(struct table *table, const struct timeline *folded, str
 	struct constraints constraints;
 	if (!constraints_create(&constraints, scratch, folded, table->pins, table->period))
 		return faults_memory(faults);
-	if (table->wiring.advance == ADVANCE_COUNT)
+	if (table->wiring.line.advance == ADVANCE_COUNT)
 		return count_states(&constraints, scratch, table->state_of_cell, faults);
 	if (!solve_states(&constraints, scratch, table->state_of_cell, faults))
 		return false;
@@ -113,7 +113,7 @@ static bool fill_codes(struct table *table, struct arena *scratch)
 
 static uint64_t data_levels(const struct table *table, uint64_t asserted)
 {
-	return levels_of(table->timeline->plan, asserted) & table->wiring.data_signals;
+	return levels_of(table->timeline->plan, asserted) & table->wiring.line.data_signals;
 }
 
 // A spare row leads to the frame's first cell, with the data signals as they are there, or at rest and blanked.
@@ -121,11 +121,11 @@ static struct row spare_row(const struct table *table)
 {
 	const int blanking = table->timeline->plan->role_signal[ROLE_BLANKING];
 	const uint64_t at_rest = blanking < 0 ? 0 : (uint64_t)1 << blanking;
-	const bool counts = table->wiring.advance == ADVANCE_COUNT;
+	const bool counts = table->wiring.line.advance == ADVANCE_COUNT;
 	return (struct row){
 		.next = counts ? 0 : table->state_of_cell[0],
 		.clear = counts,
-		.levels = data_levels(table, table->wiring.outputs == OUTPUTS_REGISTERED ? table->pins[0] : at_rest),
+		.levels = data_levels(table, table->wiring.line.outputs == OUTPUTS_REGISTERED ? table->pins[0] : at_rest),
 	};
 }
 
@@ -188,10 +188,10 @@ struct row table_row(const struct table *table, uint32_t cell)
 {
 	const uint32_t frame_next = (cell + 1) % table->timeline->cell_count;
 	const uint32_t next = (cell + 1) % table->period;
-	const bool counts = table->wiring.advance == ADVANCE_COUNT;
+	const bool counts = table->wiring.line.advance == ADVANCE_COUNT;
 	return (struct row){
 		.next = counts ? 0 : table->state_of_cell[next],
-		.clear = counts && table->wiring.clear == CLEAR_SYNC && next == 0,
-		.levels = data_levels(table, table->pins[table->wiring.outputs == OUTPUTS_REGISTERED ? frame_next : cell]),
+		.clear = counts && table->wiring.line.clear == CLEAR_SYNC && next == 0,
+		.levels = data_levels(table, table->pins[table->wiring.line.outputs == OUTPUTS_REGISTERED ? frame_next : cell]),
 	};
 }

@@ -16,6 +16,7 @@ static void put_address_wire(struct text *out, const struct address_wire *wire, 
 	case ADDRESS_LOW: text_put(out, "low"); break;
 	case ADDRESS_HIGH: text_put(out, "high"); break;
 	case ADDRESS_STATE: text_printf(out, "state.%u", wire->index); break;
+	case ADDRESS_KIND: text_printf(out, "kind.%u", wire->index); break;
 	case ADDRESS_BANK: text_printf(out, "bank.%u", wire->index); break;
 	}
 }
@@ -25,6 +26,8 @@ static void put_data_wire(struct text *out, const struct plan *plan, const struc
 	switch (wire->kind) {
 	case DATA_OPEN: text_put(out, "-"); break;
 	case DATA_NEXT: text_printf(out, "next.%u", wire->index); break;
+	case DATA_KIND: text_printf(out, "kind.%u", wire->index); break;
+	case DATA_STEP: text_put(out, "step"); break;
 	case DATA_CLEAR: text_put(out, "clear"); break;
 	case DATA_SIGNAL: text_put(out, plan->signals[wire->index].name); break;
 	}

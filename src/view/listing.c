@@ -33,8 +33,8 @@ static void put_chip(struct text *out, const struct chip *chip, const struct ima
 static void put_row(struct text *out, const struct table *table, const struct row *row)
 {
 	const struct plan *plan = table->timeline->plan;
-	if (plan->machine.advance == ADVANCE_TABLE)
-		text_printf(out, "  %0*X ", (int)(plan->machine.state_bits + 3) / 4, (unsigned)row->next);
+	if (plan->machine.line.advance == ADVANCE_TABLE)
+		text_printf(out, "  %0*X ", (int)(plan->machine.line.state_bits + 3) / 4, (unsigned)row->next);
 	else
 		text_printf(out, "  %d ", row->clear);
 	for (size_t signal = 0; signal < plan->signal_count; signal++)
@@ -61,7 +61,7 @@ static bool is_decoded(const struct plan *plan, size_t field)
 // Puts a state, and the code of each decoded field in it.
 static void put_state(struct text *out, const struct plan *plan, uint32_t state)
 {
-	text_printf(out, "%0*X", (int)(plan->machine.state_bits + 3) / 4, (unsigned)state);
+	text_printf(out, "%0*X", (int)(plan->machine.line.state_bits + 3) / 4, (unsigned)state);
 	for (size_t field = 0; field < plan->machine.field_count; field++)
 		if (is_decoded(plan, field))
 			text_printf(out, " %u", (unsigned)field_value(&plan->machine.fields[field], state));
@@ -69,7 +69,7 @@ static void put_state(struct text *out, const struct plan *plan, uint32_t state)
 
 static void put_word_heading(struct text *out, const struct plan *plan)
 {
-	text_printf(out, ", word (%s", plan->machine.advance == ADVANCE_TABLE ? "next state" : "clear");
+	text_printf(out, ", word (%s", plan->machine.line.advance == ADVANCE_TABLE ? "next state" : "clear");
 	bool first = true;
 	for (size_t signal = 0; signal < plan->signal_count; signal++) {
 		if (!signal_is_data(&plan->signals[signal]))
@@ -94,8 +94,8 @@ static void put_heading(struct text *out, const struct plan *plan)
 		text_printf(out, " %s", plan->chips[chip].label);
 	}
 	text_put(out, "\n");
-	if (wiring_of(plan).data_signals != 0)
-		text_printf(out, "# levels are electrical, 1 is high; %s\n", plan->machine.outputs == OUTPUTS_REGISTERED
+	if (wiring_of(plan).line.data_signals != 0)
+		text_printf(out, "# levels are electrical, 1 is high; %s\n", plan->machine.line.outputs == OUTPUTS_REGISTERED
 		            ? "they are latched at the end of a cell: those in a row are the pins of the next cell"
 		            : "outputs are direct: those in a row are the pins of its own cell");
 }
@@ -114,7 +114,7 @@ static uint32_t first_spare(const struct table *table, uint32_t states, uint8_t 
 static void put_spare(struct text *out, const struct table *table, const struct image *images)
 {
 	const struct plan *plan = table->timeline->plan;
-	const uint32_t states = (uint32_t)1 << plan->machine.state_bits;
+	const uint32_t states = (uint32_t)1 << plan->machine.line.state_bits;
 	uint8_t *used = calloc(states / 8 + 1, 1);
 	if (used == NULL) {
 		out->failed = true;

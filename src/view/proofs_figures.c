@@ -241,11 +241,11 @@ static void put_settled(struct text *out, const struct proofs *proofs)
 {
 	const struct plan *plan = plan_of(proofs);
 	const struct glitch_result *glitches = &proofs->glitches;
-	const bool counts = plan->machine.advance == ADVANCE_COUNT;
+	const bool counts = plan->machine.line.advance == ADVANCE_COUNT;
 	text_put(out, "; decoded pins settle after ");
 	text_put_time_in(out, glitches->settle_s, UNIT_NANOSECONDS);
 	text_put(out, counts ? " (counter " : " (latch ");
-	text_put_time_number(out, counts ? plan->timing.counter_delay_s : plan->timing.latch_delay_s, UNIT_NANOSECONDS);
+	text_put_time_number(out, counts ? plan->timing.counter_delay_s[STAGE_LINE] : plan->timing.latch_delay_s, UNIT_NANOSECONDS);
 	text_put(out, " + decoder ");
 	text_put_time_number(out, plan->timing.decoder_delay_s, UNIT_NANOSECONDS);
 	text_put(out, ")");
@@ -319,7 +319,7 @@ static void put_sum(struct text *out, const struct proofs *proofs)
 	const struct plan *plan = plan_of(proofs);
 	const struct speed_result *speed = &proofs->speed;
 	text_put(out, speed->second_pass ? "2 x (" : "");
-	text_put(out, plan->machine.advance == ADVANCE_COUNT ? "counter " : "latch ");
+	text_put(out, plan->machine.line.advance == ADVANCE_COUNT ? "counter " : "latch ");
 	text_put_time_number(out, speed->delay_s, UNIT_NANOSECONDS);
 	text_put(out, " + access ");
 	text_put_time_number(out, speed->access_s, UNIT_NANOSECONDS);

@@ -13,7 +13,7 @@ static inline const struct plan *plan_of(const struct proofs *proofs)
 
 static inline unsigned state_bits(const struct proofs *proofs)
 {
-	return plan_of(proofs)->machine.state_bits;
+	return plan_of(proofs)->machine.line.state_bits;
 }
 
 static inline bool proof_failed(const struct proofs *proofs, enum proof_kind kind)

@@ -164,8 +164,8 @@ static void test_counter(void **state)
 	for (int clear = CLEAR_SYNC; clear <= CLEAR_ASYNC; clear++) {
 		struct bench *bench = bench_create(2, 4);
 		const size_t sync = bench_data(bench, "sync");
-		bench->plan.machine.advance = ADVANCE_COUNT;
-		bench->plan.machine.clear = (enum clear_kind)clear;
+		bench->plan.machine.line.advance = ADVANCE_COUNT;
+		bench->plan.machine.line.clear = (enum clear_kind)clear;
 		bench_region(bench, "line", 2, 0);
 		bench_region(bench, "sync", 1, SIGNAL(sync));
 		struct chip *chip = add_chip(bench, 2, 8);
@@ -194,7 +194,7 @@ static void test_spare_rows(void **state)
 	const size_t sync = bench_data(bench, "sync"), blank = bench_data(bench, "blank");
 	bench->signals[sync].active_high = false;
 	bench->plan.role_signal[ROLE_BLANKING] = (int)blank;
-	bench->plan.machine.outputs = OUTPUTS_DIRECT;
+	bench->plan.machine.line.outputs = OUTPUTS_DIRECT;
 	bench_start(bench, 2);
 	bench_region(bench, "sync", 1, SIGNAL(sync) | SIGNAL(blank));
 	bench_region(bench, "picture", 1, 0);

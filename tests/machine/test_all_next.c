@@ -49,7 +49,7 @@ static void wire_address(struct board *board, struct chip *chip, bool scrambled,
 	if (scrambled)
 		shuffle(order, pins, seed);
 	for (unsigned pin = 0; pin < pins; pin++) {
-		bool driven = order[pin] < board->wiring.state_bits;
+		bool driven = order[pin] < board->wiring.line.state_bits;
 		chip->address[pin] = driven ? (struct address_wire){ADDRESS_STATE, order[pin]}
 		                            : (struct address_wire){random_below(seed, 2) ? ADDRESS_HIGH : ADDRESS_OPEN, 0};
 	}
@@ -61,7 +61,7 @@ static void board_init(struct board *board, unsigned state_bits, unsigned data_p
 {
 	*board = (struct board){.spare_pins = scrambled ? 2 : 0};
 	board->part = (struct part){.name = "board", .address_pins = state_bits + board->spare_pins, .data_pins = data_pins};
-	board->wiring = (struct wiring){.chips = board->chips, .state_bits = state_bits, .advance = ADVANCE_TABLE};
+	board->wiring = (struct wiring){.chips = board->chips, .line.state_bits = state_bits, .line.advance = ADVANCE_TABLE};
 	board->wiring.chip_count = scrambled ? MAX_CHIPS : (state_bits + data_pins - 1) / data_pins;
 	unsigned pins = (unsigned)board->wiring.chip_count * data_pins, order[MAX_CHIPS * LIMIT_DATA_PINS];
 	for (unsigned pin = 0; pin < pins; pin++)
@@ -117,7 +117,7 @@ static uint32_t wired_next(const struct board *board, uint32_t state)
 
 static void compare_stride(const struct board *board, const struct machine *machine, size_t stride)
 {
-	size_t states = (size_t)1 << board->wiring.state_bits;
+	size_t states = (size_t)1 << board->wiring.line.state_bits;
 	uint32_t *next = malloc(states * stride * sizeof *next);
 	assert_non_null(next);
 	for (size_t word = 0; word < states * stride; word++)
@@ -125,7 +125,7 @@ static void compare_stride(const struct board *board, const struct machine *mach
 	machine_all_next(machine, next, stride);
 	for (uint32_t state = 0; state < states; state++) {
 		assert_int_equal(next[state * stride], machine_next(machine, state));
-		if (board->wiring.advance == ADVANCE_TABLE)
+		if (board->wiring.line.advance == ADVANCE_TABLE)
 			assert_int_equal(next[state * stride], wired_next(board, state));
 		for (size_t word = 1; word < stride; word++)
 			assert_int_equal(next[state * stride + word], GUARD);
@@ -170,8 +170,8 @@ static void compare_counters(enum clear_kind clear, bool scrambled, uint32_t one
 	for (unsigned state_bits = 1; state_bits <= 13; state_bits++) {
 		struct board board;
 		board_init(&board, state_bits, 8, scrambled, &seed);
-		board.wiring.advance = ADVANCE_COUNT;
-		board.wiring.clear = clear;
+		board.wiring.line.advance = ADVANCE_COUNT;
+		board.wiring.line.clear = clear;
 		for (size_t chip = 0; chip < board.wiring.chip_count; chip++)
 			memset(board.chips[chip].data, 0, sizeof board.chips[chip].data);
 		board.chips[0].data[3] = (struct data_wire){DATA_CLEAR, 0};

@@ -15,7 +15,7 @@ static const struct part wide = {.name = "wide", .address_pins = 2, .data_pins =
 
 static void assert_row(const struct machine *machine, uint32_t state, uint32_t next, bool clear, uint64_t levels)
 {
-	struct row row = machine_row(machine, state);
+	struct row row = machine_row(machine, STAGE_LINE, state);
 	assert_int_equal(row.next, next);
 	assert_int_equal(row.clear, clear);
 	assert_int_equal(row.levels, levels);
@@ -41,7 +41,7 @@ static void straight_rows(void **test)
 	struct image image = {bytes, sizeof bytes};
 	struct chip chip = {.label = "rom0", .part = &two_pins, .address = {{ADDRESS_STATE, 0}, {ADDRESS_STATE, 1}},
 	                    .data = {{DATA_NEXT, 0}, {DATA_NEXT, 1}, {DATA_SIGNAL, 0}, {DATA_SIGNAL, 1}}};
-	struct wiring wiring = {.chips = &chip, .chip_count = 1, .state_bits = 2, .data_signals = 3};
+	struct wiring wiring = {.chips = &chip, .chip_count = 1, .line.state_bits = 2, .line.data_signals = 3};
 	struct arena *arena = arena_create();
 	struct machine *machine = create(arena, &wiring, &image, 0);
 	assert_row(machine, 0, 1, false, 0);
@@ -84,7 +84,7 @@ static void scrambled_rows(void **test)
 		{.label = "U8", .part = &three_pins, .address = {{ADDRESS_LOW, 0}, {ADDRESS_STATE, 1}, {ADDRESS_STATE, 0}},
 		 .data = {[3] = {DATA_NEXT, 1}, [4] = {DATA_SIGNAL, 2}}},
 	};
-	struct wiring wiring = {.chips = chips, .chip_count = 2, .state_bits = 2, .data_signals = 0x24};
+	struct wiring wiring = {.chips = chips, .chip_count = 2, .line.state_bits = 2, .line.data_signals = 0x24};
 	struct arena *arena = arena_create();
 	struct machine *machine = create(arena, &wiring, images, 0);
 	assert_row(machine, 0, 1, false, 0x00);
@@ -109,7 +109,7 @@ static void wide_chip(void **test)
 	struct image image = {bytes, sizeof bytes};
 	struct chip chip = {.label = "rom0", .part = &wide, .address = {{ADDRESS_STATE, 0}, {ADDRESS_STATE, 1}},
 	                    .data = {[0] = {DATA_NEXT, 0}, [9] = {DATA_NEXT, 1}, [15] = {DATA_SIGNAL, 0}}};
-	struct wiring wiring = {.chips = &chip, .chip_count = 1, .state_bits = 2, .data_signals = 1};
+	struct wiring wiring = {.chips = &chip, .chip_count = 1, .line.state_bits = 2, .line.data_signals = 1};
 	struct arena *arena = arena_create();
 	struct machine *machine = create(arena, &wiring, &image, 0);
 	assert_row(machine, 0, 1, false, 0);
@@ -129,7 +129,7 @@ static void pins_that_no_state_drives(void **test)
 	struct image image = {bytes, sizeof bytes};
 	struct chip chip = {.label = "rom0", .part = &four_pins, .data = {{DATA_NEXT, 0}},
 	                    .address = {{ADDRESS_STATE, 0}, {ADDRESS_HIGH, 0}, {ADDRESS_BANK, 0}, {ADDRESS_OPEN, 0}}};
-	struct wiring wiring = {.chips = &chip, .chip_count = 1, .state_bits = 1, .bank_bits = 1};
+	struct wiring wiring = {.chips = &chip, .chip_count = 1, .line.state_bits = 1, .bank_bits = 1};
 	struct arena *arena = arena_create();
 	struct machine *machine = create(arena, &wiring, &image, 0), *jumpered = create(arena, &wiring, &image, 1);
 	assert_row(machine, 0, 1, false, 0);
@@ -159,8 +159,8 @@ static void counter_with_sync_clear(void **test)
 	};
 	struct image image = {bytes, sizeof bytes};
 	struct chip chip = counted_chip();
-	struct wiring wiring = {.chips = &chip, .chip_count = 1, .state_bits = 2, .advance = ADVANCE_COUNT, .clear = CLEAR_SYNC,
-	                        .data_signals = 1};
+	struct wiring wiring = {.chips = &chip, .chip_count = 1, .line.state_bits = 2, .line.advance = ADVANCE_COUNT, .line.clear = CLEAR_SYNC,
+	                        .line.data_signals = 1};
 	struct arena *arena = arena_create();
 	struct machine *machine = create(arena, &wiring, &image, 0);
 	assert_row(machine, 1, 0, false, 1);
@@ -184,8 +184,8 @@ static void counter_with_async_clear(void **test)
 	};
 	struct image image = {bytes, sizeof bytes};
 	struct chip chip = counted_chip();
-	struct wiring wiring = {.chips = &chip, .chip_count = 1, .state_bits = 2, .advance = ADVANCE_COUNT, .clear = CLEAR_ASYNC,
-	                        .data_signals = 1};
+	struct wiring wiring = {.chips = &chip, .chip_count = 1, .line.state_bits = 2, .line.advance = ADVANCE_COUNT, .line.clear = CLEAR_ASYNC,
+	                        .line.data_signals = 1};
 	struct arena *arena = arena_create();
 	struct machine *machine = create(arena, &wiring, &image, 0);
 	assert_int_equal(machine_settle(machine, 2), 0);

@@ -39,13 +39,13 @@ static inline struct by_hand *by_hand_create(unsigned state_bits)
 	plan->sweeps = hand->sweeps;
 	plan->chips = hand->chips;
 	plan->machine.fields = hand->fields;
-	plan->machine.state_bits = state_bits;
+	plan->machine.line.state_bits = state_bits;
 	plan->clock.master_hz = fraction_whole(1000000);
 	plan->clock.cell_ticks = 10;
 	for (int role = 0; role < ROLE_COUNT; role++)
 		plan->role_signal[role] = -1;
 	struct timing *timing = &plan->timing;
-	timing->latch_delay_s = timing->latch_setup_s = timing->counter_delay_s = timing->counter_setup_s = FRACTION_ZERO;
+	timing->latch_delay_s = timing->latch_setup_s = timing->counter_delay_s[STAGE_LINE] = timing->counter_setup_s[STAGE_LINE] = FRACTION_ZERO;
 	timing->decoder_delay_s = timing->margin_s = FRACTION_ZERO;
 	timing->share = fraction_whole(1);
 	hand->timeline.plan = plan;
@@ -153,7 +153,7 @@ static inline void set_hold(struct by_hand *hand, uint32_t cell, size_t field, u
 // Adds an erased 8-bit chip: A0… take the state bits and then the bank bits, nothing is on its data pins.
 static inline struct chip *add_chip(struct by_hand *hand, const char *label)
 {
-	unsigned state_bits = hand->plan.machine.state_bits, pins = state_bits + hand->plan.bank_bits;
+	unsigned state_bits = hand->plan.machine.line.state_bits, pins = state_bits + hand->plan.bank_bits;
 	hand->part = (struct part){.name = "hand", .address_pins = pins, .data_pins = 8};
 	size_t index = hand->plan.chip_count++;
 	struct chip *chip = &hand->chips[index];
@@ -173,9 +173,9 @@ static inline struct chip *add_chip(struct by_hand *hand, const char *label)
 static inline void add_straight_chips(struct by_hand *hand)
 {
 	static const char *const labels[] = {"rom0", "rom1", "rom2", "rom3"};
-	bool counts = hand->plan.machine.advance == ADVANCE_COUNT;
+	bool counts = hand->plan.machine.line.advance == ADVANCE_COUNT;
 	unsigned used = 8;
-	for (unsigned bit = 0; bit < (counts ? 1 : hand->plan.machine.state_bits); bit++) {
+	for (unsigned bit = 0; bit < (counts ? 1 : hand->plan.machine.line.state_bits); bit++) {
 		if (used == 8) {
 			add_chip(hand, labels[hand->plan.chip_count]);
 			used = 0;
@@ -265,7 +265,7 @@ static inline struct by_hand *small_board(void)
 // Burns the table of the small board for states in the order of the cells; all other states lead to the first.
 static inline void burn_small(struct by_hand *hand, const uint32_t *states)
 {
-	bool direct = hand->plan.machine.outputs == OUTPUTS_DIRECT;
+	bool direct = hand->plan.machine.line.outputs == OUTPUTS_DIRECT;
 	for (uint32_t state = 0; state < 8; state++)
 		burn(hand, state, states[0], direct ? SMALL_BLANK : small_pins[0]);
 	for (uint32_t cell = 0; cell < SMALL_CELLS; cell++) {

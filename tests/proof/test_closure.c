@@ -326,7 +326,7 @@ static void counter_runs_on(void **test)
 {
 	(void)test;
 	struct by_hand *hand = small_board();
-	hand->plan.machine.advance = ADVANCE_COUNT;
+	hand->plan.machine.line.advance = ADVANCE_COUNT;
 	add_straight_chips(hand);
 	for (uint32_t state = 0; state < 8; state++)
 		burn_count(hand, state, state > 4, small_pins[(state + 1) % 5]);

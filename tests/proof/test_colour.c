@@ -19,7 +19,7 @@ static struct by_hand *lines_of(uint32_t lines, int64_t ticks, int64_t extra, co
 	while ((1u << bits) < lines)
 		bits++;
 	struct by_hand *hand = by_hand_create(bits);
-	hand->plan.machine.advance = ADVANCE_COUNT;
+	hand->plan.machine.line.advance = ADVANCE_COUNT;
 	hand->plan.clock.cell_ticks = ticks;
 	hand->plan.clock.has_subcarrier = true;
 	hand->plan.clock.subcarrier_hz = subcarrier;

@@ -34,7 +34,7 @@ static void any_start(void **test)
 		add_straight_chips(hand);
 		burn_small(hand, orders[index]);
 		assert_found(hand, orders[index][0]);
-		hand->plan.machine.outputs = OUTPUTS_DIRECT;
+		hand->plan.machine.line.outputs = OUTPUTS_DIRECT;
 		burn_small(hand, orders[index]);
 		assert_found(hand, orders[index][0]);
 		by_hand_destroy(hand);

@@ -238,8 +238,8 @@ static void disturbed_loop(void **test)
 static struct by_hand *passing_counter(uint32_t cells, const uint32_t *codes, size_t count)
 {
 	struct by_hand *hand = by_hand_create(3);
-	hand->plan.machine.advance = ADVANCE_COUNT;
-	hand->plan.machine.clear = CLEAR_ASYNC;
+	hand->plan.machine.line.advance = ADVANCE_COUNT;
+	hand->plan.machine.line.clear = CLEAR_ASYNC;
 	uint64_t gate = add_decoded(hand, "gate", add_field(hand, "top", 2, 1), codes, count);
 	uint64_t asserted[8] = {0};
 	for (uint32_t cell = 0; cell < cells; cell++)
@@ -340,7 +340,7 @@ static void decoded_pins_settle(void **test)
 	(void)test;
 	struct by_hand *hand = gated((const uint32_t[]){1, 3}, 2, (uint32_t[]){0, 2, 6, 4}, 1);
 	hand->plan.timing.latch_delay_s = ratio(15, 1000000000);
-	hand->plan.timing.counter_delay_s = ratio(51, 1000000000);
+	hand->plan.timing.counter_delay_s[STAGE_LINE] = ratio(51, 1000000000);
 	hand->plan.timing.decoder_delay_s = ratio(38, 1000000000);
 	struct proofs *proofs = prove(hand, 0);
 	assert_ratio(proofs->glitches.settle_s, 53, 1000000000);
@@ -348,7 +348,7 @@ static void decoded_pins_settle(void **test)
 	by_hand_destroy(hand);
 	hand = passing_counter(5, (const uint32_t[]){0, 2}, 2);
 	hand->plan.timing.latch_delay_s = ratio(15, 1000000000);
-	hand->plan.timing.counter_delay_s = ratio(51, 1000000000);
+	hand->plan.timing.counter_delay_s[STAGE_LINE] = ratio(51, 1000000000);
 	hand->plan.timing.decoder_delay_s = ratio(38, 1000000000);
 	proofs = prove(hand, 0);
 	assert_ratio(proofs->glitches.settle_s, 89, 1000000000);
@@ -372,7 +372,7 @@ static void direct_outputs_settle(void **test)
 {
 	(void)test;
 	struct by_hand *hand = small_board();
-	hand->plan.machine.outputs = OUTPUTS_DIRECT;
+	hand->plan.machine.line.outputs = OUTPUTS_DIRECT;
 	hand->plan.timing.latch_delay_s = ratio(13, 1000000000);
 	struct chip *first = add_chip(hand, "U7"), *second = add_chip(hand, "U8");
 	first->access_s = ratio(120, 1000000000);
@@ -396,9 +396,9 @@ static void async_clear_settles(void **test)
 {
 	(void)test;
 	struct by_hand *hand = small_board();
-	hand->plan.machine.advance = ADVANCE_COUNT;
-	hand->plan.machine.clear = CLEAR_ASYNC;
-	hand->plan.timing.counter_delay_s = ratio(51, 1000000000);
+	hand->plan.machine.line.advance = ADVANCE_COUNT;
+	hand->plan.machine.line.clear = CLEAR_ASYNC;
+	hand->plan.timing.counter_delay_s[STAGE_LINE] = ratio(51, 1000000000);
 	struct chip *first = add_chip(hand, "U7"), *second = add_chip(hand, "U8");
 	first->access_s = ratio(250, 1000000000);
 	second->access_s = ratio(150, 1000000000);

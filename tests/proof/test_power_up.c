@@ -132,8 +132,8 @@ static void passing_states_settle_first(void **test)
 {
 	(void)test;
 	struct by_hand *hand = small_board();
-	hand->plan.machine.advance = ADVANCE_COUNT;
-	hand->plan.machine.clear = CLEAR_ASYNC;
+	hand->plan.machine.line.advance = ADVANCE_COUNT;
+	hand->plan.machine.line.clear = CLEAR_ASYNC;
 	add_straight_chips(hand);
 	for (uint32_t state = 0; state < 8; state++)
 		burn_count(hand, state, state == 5 || state == 7, small_pins[(state + 1) % 5]);
@@ -153,7 +153,7 @@ static void counter_overflows(void **test)
 {
 	(void)test;
 	struct by_hand *hand = small_board();
-	hand->plan.machine.advance = ADVANCE_COUNT;
+	hand->plan.machine.line.advance = ADVANCE_COUNT;
 	add_straight_chips(hand);
 	for (uint32_t state = 0; state < 8; state++)
 		burn_count(hand, state, state == 4, small_pins[(state + 1) % 5]);

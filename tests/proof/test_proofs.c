@@ -63,7 +63,7 @@ static void flips_in_a_table(enum outputs outputs)
 {
 	static const uint32_t states[SMALL_CELLS] = {7, 1, 2, 4, 0};
 	struct by_hand *hand = small_board();
-	hand->plan.machine.outputs = outputs;
+	hand->plan.machine.line.outputs = outputs;
 	add_straight_chips(hand);
 	burn_small(hand, states);
 	unsigned flips = 0;
@@ -112,9 +112,9 @@ static void flips_in_a_counter(enum outputs outputs, enum clear_kind clear)
 {
 	struct by_hand *hand = small_board();
 	bool direct = outputs == OUTPUTS_DIRECT, async = clear == CLEAR_ASYNC;
-	hand->plan.machine.outputs = outputs;
-	hand->plan.machine.advance = ADVANCE_COUNT;
-	hand->plan.machine.clear = clear;
+	hand->plan.machine.line.outputs = outputs;
+	hand->plan.machine.line.advance = ADVANCE_COUNT;
+	hand->plan.machine.line.clear = clear;
 	add_straight_chips(hand);
 	for (uint32_t state = 0; state < 8; state++)
 		burn_count(hand, state, async ? state > 4 : state >= 4, small_pins[(state + !direct) % SMALL_CELLS]);

@@ -68,7 +68,7 @@ static void direct_pin(void **test)
 {
 	(void)test;
 	struct by_hand *hand = small_board();
-	hand->plan.machine.outputs = OUTPUTS_DIRECT;
+	hand->plan.machine.line.outputs = OUTPUTS_DIRECT;
 	add_straight_chips(hand);
 	burn_small(hand, small_states);
 	struct proofs *proofs = prove(hand, 0);
@@ -157,7 +157,7 @@ static void codes_with_direct_outputs(void **test)
 	(void)test;
 	static const uint32_t codes[] = {1, 3};
 	struct by_hand *hand = decoded_board(codes, 2, (uint32_t[]){0, 2, 4, 1});
-	hand->plan.machine.outputs = OUTPUTS_DIRECT;
+	hand->plan.machine.line.outputs = OUTPUTS_DIRECT;
 	struct proofs *proofs = prove(hand, 0);
 	assert_int_equal(failed(proofs)->cell, 2);
 	assert_int_equal(failed(proofs)->state, 2);
@@ -254,8 +254,8 @@ static void counted_pins(void **test)
 {
 	(void)test;
 	struct by_hand *hand = small_board();
-	hand->plan.machine.advance = ADVANCE_COUNT;
-	hand->plan.machine.clear = CLEAR_ASYNC;
+	hand->plan.machine.line.advance = ADVANCE_COUNT;
+	hand->plan.machine.line.clear = CLEAR_ASYNC;
 	add_straight_chips(hand);
 	for (uint32_t state = 0; state < 8; state++)
 		burn_count(hand, state, state > 4, small_pins[(state + 1) % 5]);

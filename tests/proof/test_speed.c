@@ -12,15 +12,15 @@
 static struct by_hand *timed(enum outputs outputs, enum advance advance, enum clear_kind clear)
 {
 	struct by_hand *hand = small_board();
-	hand->plan.machine.outputs = outputs;
-	hand->plan.machine.advance = advance;
-	hand->plan.machine.clear = clear;
+	hand->plan.machine.line.outputs = outputs;
+	hand->plan.machine.line.advance = advance;
+	hand->plan.machine.line.clear = clear;
 	hand->plan.clock.master_hz = fraction_whole(20000000);
 	struct timing *timing = &hand->plan.timing;
 	timing->latch_delay_s = NS(30);
 	timing->latch_setup_s = NS(15);
-	timing->counter_delay_s = NS(40);
-	timing->counter_setup_s = NS(25);
+	timing->counter_delay_s[STAGE_LINE] = NS(40);
+	timing->counter_setup_s[STAGE_LINE] = NS(25);
 	timing->margin_s = NS(20);
 	add_straight_chips(hand);
 	hand->chips[0].access_s = NS(150);

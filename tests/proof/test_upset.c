@@ -133,8 +133,8 @@ static void passing_states(void **test)
 {
 	(void)test;
 	struct by_hand *hand = small_board();
-	hand->plan.machine.advance = ADVANCE_COUNT;
-	hand->plan.machine.clear = CLEAR_ASYNC;
+	hand->plan.machine.line.advance = ADVANCE_COUNT;
+	hand->plan.machine.line.clear = CLEAR_ASYNC;
 	add_straight_chips(hand);
 	for (uint32_t state = 0; state < 8; state++)
 		burn_count(hand, state, state > 4, small_pins[(state + 1) % 5]);

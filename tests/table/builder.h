@@ -70,7 +70,7 @@ static inline struct bench *bench_create(unsigned state_bits, uint32_t room)
 	bench->plan.chips = bench->chips;
 	for (int role = 0; role < ROLE_COUNT; role++)
 		bench->plan.role_signal[role] = -1;
-	bench->plan.machine.state_bits = state_bits;
+	bench->plan.machine.line.state_bits = state_bits;
 	bench->plan.machine.fields = bench->fields;
 	bench->plan.machine.place = bench_place(bench, 1);
 	bench->plan.machine.start_place = bench_place(bench, 2);
@@ -235,7 +235,7 @@ static inline void assert_valid(const struct bench *bench)
 	const struct timeline *timeline = &bench->timeline;
 	const struct plan *plan = &bench->plan;
 	const int64_t count = timeline->cell_count;
-	const uint32_t states = (uint32_t)1 << plan->machine.state_bits;
+	const uint32_t states = (uint32_t)1 << plan->machine.line.state_bits;
 	uint8_t *seen = test_calloc(states, 1);
 	assert_non_null(table);
 	assert_int_equal(timeline->cell_count % table->period, 0);

@@ -54,7 +54,7 @@ static inline void add_signals(struct bench *bench, struct numbers *numbers, uns
 static inline void add_cells(struct bench *bench, struct numbers *numbers, uint32_t cells, bool noise)
 {
 	const struct plan *plan = &bench->plan;
-	const uint32_t states = (uint32_t)1 << plan->machine.state_bits;
+	const uint32_t states = (uint32_t)1 << plan->machine.line.state_bits;
 	uint64_t sets[BENCH_SIGNALS] = {0};
 	uint32_t hidden[STATES];
 	for (size_t index = 0; index < plan->signal_count; index++) {

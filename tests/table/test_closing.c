@@ -28,7 +28,7 @@ static uint32_t jumps_between(const struct decoders *decoders, uint32_t from, ui
 static bool may_have(const struct bench *bench, uint32_t cell, uint32_t code)
 {
 	const struct timeline *timeline = &bench->timeline;
-	const unsigned low = bench->plan.machine.state_bits - CODE_BITS;
+	const unsigned low = bench->plan.machine.line.state_bits - CODE_BITS;
 	if (timeline->has_holds && ((code << low ^ timeline->hold_value[cell]) & timeline->hold_mask[cell]) != 0)
 		return false;
 	for (size_t index = 0; index < bench->plan.signal_count; index++) {
@@ -77,7 +77,7 @@ static void add_listed(struct bench *bench, struct numbers *numbers, size_t fiel
 // Runs of cells along a hidden walk over codes, so that every cell has some code; some hold a bit of it.
 static void add_runs(struct bench *bench, struct numbers *numbers, size_t top)
 {
-	const unsigned low = bench->plan.machine.state_bits - CODE_BITS;
+	const unsigned low = bench->plan.machine.line.state_bits - CODE_BITS;
 	const bool holds = below(numbers, 2) == 0;
 	for (uint32_t run = 0; run < 12; run++) {
 		const uint32_t code = below(numbers, CODES);

@@ -11,7 +11,7 @@ static void assert_printed(const struct bench *bench, const char *expected)
 static struct bench *create_counter(unsigned bits)
 {
 	struct bench *bench = bench_create(bits, 64);
-	bench->plan.machine.advance = ADVANCE_COUNT;
+	bench->plan.machine.line.advance = ADVANCE_COUNT;
 	return bench;
 }
 
@@ -137,7 +137,7 @@ static void test_short_by_one(void **state)
 {
 	(void)state;
 	struct bench *bench = create_counter(2);
-	bench->plan.machine.clear = CLEAR_ASYNC;
+	bench->plan.machine.line.clear = CLEAR_ASYNC;
 	bench_data(bench, "x");
 	bench_region(bench, "a", 3, 0);
 	bench_region(bench, "b", 1, 1);

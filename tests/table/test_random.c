@@ -37,7 +37,7 @@ static bool may_have(const struct machine_case *machine, uint32_t cell, uint32_t
 // Kuhn's algorithm: looks for an augmenting path from a cell.
 static bool find_state(struct machine_case *machine, uint32_t cell, int start)
 {
-	const uint32_t states = (uint32_t)1 << machine->bench->plan.machine.state_bits;
+	const uint32_t states = (uint32_t)1 << machine->bench->plan.machine.line.state_bits;
 	for (uint32_t state = 0; state < states; state++) {
 		if (machine->visited[state] || !may_have(machine, cell, state, start))
 			continue;
@@ -102,7 +102,7 @@ static bool can_solve_some(struct machine_case *machine, int start)
 {
 	const struct bench *bench = machine->bench;
 	for (machine->period = 1; machine->period <= bench->timeline.cell_count; machine->period++)
-		if (machine->period <= 1u << bench->plan.machine.state_bits && has_period(&bench->timeline, machine->period) &&
+		if (machine->period <= 1u << bench->plan.machine.line.state_bits && has_period(&bench->timeline, machine->period) &&
 		    can_solve(machine, start))
 			return true;
 	return false;

@@ -35,7 +35,7 @@ static void test_direct(void **state)
 	const size_t sync = bench_data(bench, "sync"), blank = bench_data(bench, "blank");
 	bench->signals[sync].active_high = false;
 	bench->plan.role_signal[ROLE_BLANKING] = (int)blank;
-	bench->plan.machine.outputs = OUTPUTS_DIRECT;
+	bench->plan.machine.line.outputs = OUTPUTS_DIRECT;
 	bench_region(bench, "picture", 3, 0);
 	bench_region(bench, "porch", 1, SIGNAL(blank));
 	bench_region(bench, "sync", 2, SIGNAL(blank) | SIGNAL(sync));
@@ -173,8 +173,8 @@ static void test_count_sync(void **state)
 	(void)state;
 	struct bench *bench = bench_create(3, 5);
 	const size_t sync = bench_data(bench, "sync");
-	bench->plan.machine.advance = ADVANCE_COUNT;
-	bench->plan.machine.clear = CLEAR_SYNC;
+	bench->plan.machine.line.advance = ADVANCE_COUNT;
+	bench->plan.machine.line.clear = CLEAR_SYNC;
 	bench_region(bench, "line", 4, 0);
 	bench_region(bench, "sync", 1, SIGNAL(sync));
 	const struct table *table = bench_table(bench);
@@ -192,7 +192,7 @@ static void test_count_sync_full(void **state)
 	(void)state;
 	struct bench *bench = bench_create(2, 4);
 	const size_t sync = bench_data(bench, "sync");
-	bench->plan.machine.advance = ADVANCE_COUNT;
+	bench->plan.machine.line.advance = ADVANCE_COUNT;
 	bench_region(bench, "line", 3, 0);
 	bench_region(bench, "sync", 1, SIGNAL(sync));
 	const struct table *table = bench_table(bench);
@@ -209,9 +209,9 @@ static void test_count_async(void **state)
 	struct bench *bench = bench_create(2, 3);
 	const size_t sync = bench_data(bench, "sync"), blank = bench_data(bench, "blank");
 	bench->plan.role_signal[ROLE_BLANKING] = (int)blank;
-	bench->plan.machine.advance = ADVANCE_COUNT;
-	bench->plan.machine.clear = CLEAR_ASYNC;
-	bench->plan.machine.outputs = OUTPUTS_DIRECT;
+	bench->plan.machine.line.advance = ADVANCE_COUNT;
+	bench->plan.machine.line.clear = CLEAR_ASYNC;
+	bench->plan.machine.line.outputs = OUTPUTS_DIRECT;
 	bench_region(bench, "line", 2, 0);
 	bench_region(bench, "sync", 1, SIGNAL(sync) | SIGNAL(blank));
 	const struct table *table = bench_table(bench);

@@ -11,18 +11,18 @@ static void test_wiring_of(void **state)
 	const size_t burst = bench_data(bench, "burst");
 	bench->plan.chip_count = 2;
 	bench->plan.bank_bits = 1;
-	bench->plan.machine.advance = ADVANCE_COUNT;
-	bench->plan.machine.clear = CLEAR_ASYNC;
-	bench->plan.machine.outputs = OUTPUTS_DIRECT;
+	bench->plan.machine.line.advance = ADVANCE_COUNT;
+	bench->plan.machine.line.clear = CLEAR_ASYNC;
+	bench->plan.machine.line.outputs = OUTPUTS_DIRECT;
 	const struct wiring wiring = wiring_of(&bench->plan);
 	assert_ptr_equal(wiring.chips, bench->chips);
 	assert_int_equal(wiring.chip_count, 2);
-	assert_int_equal(wiring.state_bits, 5);
+	assert_int_equal(wiring.line.state_bits, 5);
 	assert_int_equal(wiring.bank_bits, 1);
-	assert_int_equal(wiring.advance, ADVANCE_COUNT);
-	assert_int_equal(wiring.clear, CLEAR_ASYNC);
-	assert_int_equal(wiring.outputs, OUTPUTS_DIRECT);
-	assert_int_equal(wiring.data_signals, SIGNAL(sync) | SIGNAL(burst)); // blank is decoded
+	assert_int_equal(wiring.line.advance, ADVANCE_COUNT);
+	assert_int_equal(wiring.line.clear, CLEAR_ASYNC);
+	assert_int_equal(wiring.line.outputs, OUTPUTS_DIRECT);
+	assert_int_equal(wiring.line.data_signals, SIGNAL(sync) | SIGNAL(burst)); // blank is decoded
 	assert_int_equal(blank, 1);
 	bench_destroy(bench);
 }

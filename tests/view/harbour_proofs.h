@@ -64,8 +64,8 @@ static inline void harbour_plan(struct harbour *harbour)
 	                              .chip_count = CHIPS, .sweeps = harbour->sweeps, .sweep_count = 1};
 	harbour->plan.clock = (struct clock){.master_hz = {157500000, 11}, .has_subcarrier = true, .phase = PHASE_LINES,
 	                                     .phase_count = 1};
-	harbour->plan.machine = (struct machine_plan){.state_bits = 16, .fields = &harbour->field, .field_count = 1};
-	harbour->plan.timing = (struct timing){.latch_delay_s = {41, 1000000000}, .counter_delay_s = {50, 1000000000},
+	harbour->plan.machine = (struct machine_plan){.line.state_bits = 16, .fields = &harbour->field, .field_count = 1};
+	harbour->plan.timing = (struct timing){.latch_delay_s = {41, 1000000000}, .counter_delay_s[STAGE_LINE] = {50, 1000000000},
 	                                       .decoder_delay_s = {38, 1000000000}, .share = {1, 1}};
 }
 

@@ -49,7 +49,7 @@ static void fill_plan(struct bench *bench)
 	bench->line_type = (struct line_type){.name = "only", .regions = &bench->region, .region_count = 1};
 	bench->plan = (struct plan){.name = "bench", .signals = bench->signals, .signal_count = 2, .lines = &bench->line_type,
 	                            .line_count = 1, .chips = bench->chips, .chip_count = 2};
-	bench->plan.machine = (struct machine_plan){.state_bits = 2, .fields = bench->fields, .field_count = 2};
+	bench->plan.machine = (struct machine_plan){.line.state_bits = 2, .fields = bench->fields, .field_count = 2};
 }
 
 static void fill_bench(struct bench *bench)
@@ -95,7 +95,7 @@ static void direct_outputs(void **state)
 	fill_bench(&bench);
 	bench.plan.signal_count = 1;
 	bench.plan.chip_count = 1;
-	bench.plan.machine.outputs = OUTPUTS_DIRECT;
+	bench.plan.machine.line.outputs = OUTPUTS_DIRECT;
 	bench.table.wiring = wiring_of(&bench.plan);
 	view_listing(&text, &bench.table, bench.images);
 	assert_string_equal(text_string(&text),

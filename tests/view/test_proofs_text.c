@@ -60,7 +60,7 @@ static void what_the_plan_does_not_ask_is_none(void **state)
 	struct proofs *proofs = &harbour.proofs;
 	harbour.plan.sweep_count = 0;
 	harbour.plan.clock.has_subcarrier = false;
-	harbour.plan.machine.advance = ADVANCE_COUNT;
+	harbour.plan.machine.line.advance = ADVANCE_COUNT;
 	proofs->proof[PROOF_COLOUR].verdict = VERDICT_ABSENT;
 	proofs->proof[PROOF_GLITCHES].verdict = VERDICT_ABSENT;
 	proofs->proof[PROOF_SWEEP].verdict = VERDICT_ABSENT;
@@ -390,7 +390,7 @@ static void decoded_pins_settle_later_after_an_async_clear(void **state)
 	struct harbour harbour;
 	harbour_fill(&harbour);
 	struct glitch_result *glitches = &harbour.proofs.glitches;
-	harbour.plan.machine.advance = ADVANCE_COUNT;
+	harbour.plan.machine.line.advance = ADVANCE_COUNT;
 	glitches->settle_s = (struct fraction){88, 1000000000};
 	assert_proof(&harbour, PROOF_GLITCHES,
 		"pass  glitches  26462 cell edges, 0 with more than one bit of a decoded field changing; no decoded\n"
@@ -414,7 +414,7 @@ static void too_slow_a_chip_says_by_how_much(void **state)
 	harbour_fill(&harbour);
 	struct speed_result *speed = &harbour.proofs.speed;
 	harbour.plan.timing.share = (struct fraction){1, 2};
-	harbour.plan.machine.advance = ADVANCE_COUNT;
+	harbour.plan.machine.line.advance = ADVANCE_COUNT;
 	speed->available_s = (struct fraction){11, 35000000};
 	speed->second_pass = true;
 	speed->slowest_chip = CHIP_ROM1;
@@ -494,7 +494,7 @@ static void states_are_as_wide_as_the_latch(void **state)
 	(void)state;
 	struct harbour harbour;
 	harbour_fill(&harbour);
-	harbour.plan.machine.state_bits = 10;
+	harbour.plan.machine.line.state_bits = 10;
 	harbour.proofs.closure.start_state = 7;
 	assert_proof(&harbour, PROOF_CLOSURE,
 		"pass  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x007 after 16.688 ms\n");

@@ -119,8 +119,8 @@ static void board_init(struct board *board, bool scrambled, uint64_t *seed)
 				board->chips[chip].data[pin] = (struct data_wire){DATA_NEXT, data[chip * 8 + pin]};
 		board->images[chip] = (struct image){need(malloc(STATES)), STATES};
 	}
-	board->wiring = (struct wiring){.chips = board->chips, .chip_count = CHIPS, .state_bits = STATE_BITS,
-	                                .advance = ADVANCE_TABLE};
+	board->wiring = (struct wiring){.chips = board->chips, .chip_count = CHIPS, .line.state_bits = STATE_BITS,
+	                                .line.advance = ADVANCE_TABLE};
 }
 
 // Burns a table of next states, bit by bit through the wires.

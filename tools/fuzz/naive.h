@@ -93,13 +93,13 @@ static inline void naive_write_row(const struct naive *naive, uint32_t state, co
 
 static uint32_t naive_settled(const struct naive *naive, uint32_t state)
 {
-	const bool may_fall = naive->wiring.advance == ADVANCE_COUNT && naive->wiring.clear == CLEAR_ASYNC;
+	const bool may_fall = naive->wiring.line.advance == ADVANCE_COUNT && naive->wiring.line.clear == CLEAR_ASYNC;
 	return may_fall && naive->rows[state].clear ? 0 : state;
 }
 
 static uint32_t naive_next(const struct naive *naive, uint32_t state)
 {
-	if (naive->wiring.advance == ADVANCE_TABLE)
+	if (naive->wiring.line.advance == ADVANCE_TABLE)
 		return naive->rows[state].next;
 	if (naive->rows[state].clear)
 		return 0;
@@ -124,7 +124,7 @@ static bool naive_asserted(const struct naive *naive, size_t signal, uint32_t ce
 	const uint32_t cells = naive->timeline->cell_count;
 	if (naive->plan->signals[signal].origin == FROM_FIELD)
 		return naive_decoded(naive, signal, naive->lap[cell]);
-	const bool direct = naive->wiring.outputs == OUTPUTS_DIRECT;
+	const bool direct = naive->wiring.line.outputs == OUTPUTS_DIRECT;
 	const bool level = naive->rows[naive->lap[direct ? cell : (cell + cells - 1) % cells]].levels >> signal & 1;
 	return level == naive->plan->signals[signal].active_high;
 }
@@ -175,8 +175,8 @@ static bool naive_follows(struct naive *naive, uint32_t start)
 static enum naive_verdict naive_find(struct naive *naive)
 {
 	const struct machine_plan *machine = &naive->plan->machine;
-	if (machine->advance == ADVANCE_COUNT || machine->has_start)
-		return naive_follows(naive, machine->advance == ADVANCE_COUNT ? 0 : machine->start) ? NAIVE_GOOD : NAIVE_BAD;
+	if (machine->line.advance == ADVANCE_COUNT || machine->has_start)
+		return naive_follows(naive, machine->line.advance == ADVANCE_COUNT ? 0 : machine->start) ? NAIVE_GOOD : NAIVE_BAD;
 	uint32_t state = 0, first;
 	for (uint32_t step = 0; step < naive->states; step++)
 		state = naive_next(naive, state);
@@ -234,10 +234,10 @@ static enum naive_verdict naive_judge(const scanlatch_images *images, uint32_t *
 	const struct timeline *timeline = images->plan->timeline;
 	struct naive naive = {.images = images, .plan = timeline->plan, .timeline = timeline};
 	naive.wiring = wiring_of(timeline->plan);
-	if (naive.wiring.state_bits > NAIVE_STATE_BITS || naive.wiring.bank_bits > 2)
+	if (naive.wiring.line.state_bits > NAIVE_STATE_BITS || naive.wiring.bank_bits > 2)
 		return NAIVE_TOO_LARGE;
 	struct arena *arena = fuzz_need(arena_create());
-	naive.states = (uint32_t)1 << naive.wiring.state_bits;
+	naive.states = (uint32_t)1 << naive.wiring.line.state_bits;
 	naive.expected = fuzz_need(timeline_pins(timeline, arena));
 	naive.rows = fuzz_need(arena_array(arena, naive.states, sizeof *naive.rows));
 	naive.lap = fuzz_need(arena_array(arena, timeline->cell_count, sizeof *naive.lap));

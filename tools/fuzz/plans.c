@@ -140,7 +140,7 @@ static void spoil_and_prove(const scanlatch_images *made, uint64_t *random, scan
 {
 	scanlatch_images *read = read_back(made, messages);
 	struct naive naive = {.images = read, .plan = made->plan->plan, .wiring = wiring_of(made->plan->plan)};
-	naive.states = (uint32_t)1 << naive.wiring.state_bits;
+	naive.states = (uint32_t)1 << naive.wiring.line.state_bits;
 	naive.bank = (uint32_t)fuzz_below(random, (size_t)1 << naive.wiring.bank_bits);
 	const size_t kind = fuzz_below(random, 4);
 	bool must_fail = false;
@@ -148,7 +148,7 @@ static void spoil_and_prove(const scanlatch_images *made, uint64_t *random, scan
 		must_fail = flip_signal(&naive, made->table, random);
 	else if (kind == 1)
 		divert(&naive, random);
-	else if (kind == 2 && naive.wiring.advance == ADVANCE_TABLE && naive.wiring.bank_bits == 0 && naive.states <= 4096)
+	else if (kind == 2 && naive.wiring.line.advance == ADVANCE_TABLE && naive.wiring.bank_bits == 0 && naive.states <= 4096)
 		swap_states(&naive, made->table, random);
 	else
 		flip_anywhere(&naive, random);
@@ -160,7 +160,7 @@ static void spoil_and_prove(const scanlatch_images *made, uint64_t *random, scan
 static void judge_images(const scanlatch_images *made, uint64_t random, bool colour_kept, scanlatch_messages *messages)
 {
 	const struct timeline *timeline = made->plan->timeline;
-	if (timeline->cell_count > PROVED_CELLS || timeline->plan->machine.state_bits > PROVED_STATE_BITS)
+	if (timeline->cell_count > PROVED_CELLS || timeline->plan->machine.line.state_bits > PROVED_STATE_BITS)
 		return;
 	scanlatch_proofs *proofs = fuzz_need(scanlatch_prove(made));
 	const bool sweep_kept = verdict_of(proofs, PROOF_SWEEP) != VERDICT_FAIL;
