@@ -180,12 +180,17 @@ void diagnose(struct diagnostics *diagnostics, enum rule rule, struct place plac
 		diagnostics->memory_failed = true;
 }
 
+// What belongs to a diagnostic that was lost has nothing to stand under.
+bool diagnostics_take_hint(const struct diagnostics *diagnostics)
+{
+	return !diagnostics->last_lost && diagnostics->count > 0;
+}
+
 __attribute__((format(printf, 4, 0)))
 static void add_remark(struct diagnostics *diagnostics, bool is_hint, struct place place, const char *format,
                        va_list arguments)
 {
-	// What belongs to a diagnostic that was lost has nothing to stand under.
-	if (diagnostics->last_lost || diagnostics->count == 0)
+	if (!diagnostics_take_hint(diagnostics))
 		return;
 	struct remark *remark = arena_alloc(diagnostics->arena, sizeof(*remark));
 	const char *message = format_message(diagnostics->arena, format, arguments);

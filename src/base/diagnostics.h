@@ -40,6 +40,9 @@ void diagnose(struct diagnostics *diagnostics, enum rule rule, struct place plac
 __attribute__((format(printf, 2, 3)))
 void diagnose_hint(struct diagnostics *diagnostics, const char *format, ...);
 
+// False if a hint to the diagnostic added last would go nowhere, since that one was not kept: then none need be sought. Cannot fail.
+bool diagnostics_take_hint(const struct diagnostics *diagnostics);
+
 // Adds a second place to the diagnostic added last ("first defined here").
 __attribute__((format(printf, 3, 4)))
 void diagnose_also(struct diagnostics *diagnostics, struct place place, const char *format, ...);

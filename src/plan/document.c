@@ -149,22 +149,39 @@ static bool take_mapping(struct reader *reader, const yaml_event_t *event)
 	return tree_open(reader->tree, NODE_MAPPING, place, (const char *)anchor);
 }
 
-static void diagnose_tag_directive(struct reader *reader, size_t end)
+// True at the start of a line that begins with the word.
+static bool line_begins(const struct position *position, const char *word)
 {
-	struct position position = reader->position;
-	struct place place = position_place(&position);
+	const size_t length = strlen(word);
 
-	for (; position.index < end; position_step(&position)) {
-		if (position.column == 1 && position.offset + 4 <= reader->source->length &&
-		    memcmp(reader->source->bytes + position.offset, "%TAG", 4) == 0) {
-			place = position_place(&position);
-			break;
-		}
-	}
-	diagnose(reader->diagnostics, RULE_YAML_TAG, place, "wanted no directive but %%YAML, found %%TAG");
+	return position->column == 1 && position->source->length - position->offset >= length &&
+	       memcmp(position->source->bytes + position->offset, word, length) == 0;
 }
 
-static bool start_document(struct reader *reader, const yaml_event_t *event)
+// Looks for %TAG between documents, from the position on. libyaml compares each of these directives with all before it, and
+// many would take it minutes; so none may get there. True if there is none.
+static bool check_directives(struct reader *reader, struct position position)
+{
+	while (position_byte(&position) != '\0') {
+		const char byte = position_byte(&position);
+		if (line_begins(&position, "%TAG")) {
+			diagnose(reader->diagnostics, RULE_YAML_TAG, position_place(&position),
+			         "wanted no directive but %%YAML, found %%TAG");
+			return false;
+		}
+		if (byte == '#' || line_begins(&position, "%"))
+			skip_comment(&position);
+		else if (line_begins(&position, "..."))
+			skip_word(&position);
+		else if (strchr(" \t\r\n", byte) != NULL)
+			position_step(&position);
+		else
+			break;
+	}
+	return true;
+}
+
+static bool start_document(struct reader *reader)
 {
 	const struct node *const root = tree_root(reader->tree);
 
@@ -174,9 +191,14 @@ static bool start_document(struct reader *reader, const yaml_event_t *event)
 		diagnose_also(reader->diagnostics, root->place, "the first begins here");
 		return false;
 	}
-	if (event->data.document_start.tag_directives.start != event->data.document_start.tag_directives.end)
-		diagnose_tag_directive(reader, event->end_mark.index);
 	return true;
+}
+
+static bool end_document(struct reader *reader, const yaml_event_t *event)
+{
+	reader->document_closed = !event->data.document_end.implicit;
+	position_seek(&reader->position, event->end_mark.index);
+	return check_directives(reader, reader->position);
 }
 
 static bool take_event(struct reader *reader, const yaml_event_t *event)
@@ -184,10 +206,9 @@ static bool take_event(struct reader *reader, const yaml_event_t *event)
 	position_seek(&reader->position, event->start_mark.index);
 	switch (event->type) {
 	case YAML_DOCUMENT_START_EVENT:
-		return start_document(reader, event);
+		return start_document(reader);
 	case YAML_DOCUMENT_END_EVENT:
-		reader->document_closed = !event->data.document_end.implicit;
-		return true;
+		return end_document(reader, event);
 	case YAML_ALIAS_EVENT:
 		return tree_add_alias(reader->tree, position_place(&reader->position),
 		                      (const char *)event->data.alias.anchor);
@@ -244,6 +265,8 @@ static void read_events(struct reader *reader)
 	const size_t start = reader->position.offset;
 	yaml_parser_t parser;
 
+	if (!check_directives(reader, reader->position))
+		return;
 	if (!yaml_parser_initialize(&parser)) {
 		out_of_memory(reader);
 		return;

@@ -33,8 +33,9 @@ struct node {
 // Parses the source's bytes (already read). Checks everything that page 2 asks of the form: UTF-8, no NUL or other
 // control characters (FILE_BINARY, FILE_ENCODING), not empty (FILE_EMPTY), at most DOCUMENT_LIMIT_BYTES (FILE_TOO_LARGE),
 // well-formed (YAML_SYNTAX), one document, no duplicate keys (with the place of the first), no tags, merge keys, cyclic
-// aliases, at most 100,000 nodes after expansion of aliases, at most 32 levels, scalar keys. Errors are added with their
-// place; independent ones (several duplicate keys) are all reported. Returns NULL if there was any error.
+// aliases, at most 100,000 nodes after expansion of aliases (64 bytes of a text that an alias repeats are one more), at most
+// 32 levels, scalar keys. Errors are added with their place; independent ones (several duplicate keys) are all reported.
+// Returns NULL if there was any error.
 const struct node *document_parse(struct arena *arena, const struct source *source, struct diagnostics *diagnostics);
 
 // The value of `key` in a mapping, or NULL. Cannot fail.

@@ -114,6 +114,8 @@ const char *nearest_word(const char *word, const char *const *candidates, size_t
 
 void hint_words(struct reader *reader, const char *word, const char *const *candidates, size_t count)
 {
+	if (!diagnostics_take_hint(reader->diagnostics))
+		return;
 	const char *near = nearest_word(word, candidates, count);
 	if (near != NULL) {
 		diagnose_hint(reader->diagnostics, "did you mean \"%s\"?", near);

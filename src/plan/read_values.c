@@ -179,6 +179,8 @@ static void put_alternatives(struct text *text, const char *const *words, size_t
 
 static void hint_choices(struct reader *reader, const char *text, const char *const *words, size_t count)
 {
+	if (!diagnostics_take_hint(reader->diagnostics))
+		return;
 	const char *near = nearest_word(text, words, count);
 	if (near != NULL) {
 		diagnose_hint(reader->diagnostics, "did you mean \"%s\"?", near);

@@ -51,7 +51,6 @@ static const struct phrase phrases[] = {
 	{NULL, "while scanning a tag directive", RULE_YAML_TAG, true, "wanted no directive but %YAML", NULL},
 	{NULL, "while scanning a %TAG directive", RULE_YAML_TAG, true, "wanted no directive but %YAML", NULL},
 	{NULL, "while parsing a %TAG directive", RULE_YAML_TAG, true, "wanted no directive but %YAML", NULL},
-	{"found duplicate %TAG directive", NULL, RULE_YAML_TAG, true, "wanted no directive but %YAML", NULL},
 	{NULL, "while scanning a directive", RULE_YAML_SYNTAX, true, "wanted no directive but %YAML", directive_hint},
 	{NULL, "while scanning a %YAML directive", RULE_YAML_SYNTAX, true, "wanted '%YAML 1.1' or '%YAML 1.2'", NULL},
 	{"found duplicate %YAML directive", NULL, RULE_YAML_SYNTAX, true, "wanted %YAML once", NULL},

@@ -7,10 +7,13 @@
 #include "plan/characters.h"
 #include "plan/name_tree.h"
 
+// A text that an alias repeats is read again, so it counts a node more for so many bytes.
+#define ALIAS_TEXT_BYTES 64
+
 // What a name was last anchored to.
 struct anchor {
 	const struct node *node;
-	size_t nodes;    // in its subtree, aliases expanded; 0 while the subtree is not complete
+	size_t nodes;    // what an alias of it counts; 0 while the subtree is not complete
 	unsigned height; // levels of collections in it
 };
 
@@ -19,7 +22,8 @@ struct frame {
 	struct node *node;
 	struct anchor *anchor; // or NULL
 	size_t first_child;    // its children so far are the tree's from here on
-	size_t nodes_before;   // the tree's count before this collection
+	size_t nodes_before;   // the tree's counts before this collection
+	size_t texts_before;
 	unsigned height;       // levels of collections in it so far, itself included
 };
 
@@ -33,6 +37,7 @@ struct tree {
 	size_t child_count;
 	size_t child_capacity;
 	size_t nodes; // aliases expanded
+	size_t texts; // what the texts so far count on top of that wherever an alias repeats them
 	struct name_tree anchors;
 	const struct node *root;
 };
@@ -64,8 +69,8 @@ static bool count_nodes(struct tree *tree, struct place place, size_t nodes)
 {
 	if (nodes > DOCUMENT_LIMIT_NODES - tree->nodes) {
 		diagnose(tree->diagnostics, RULE_YAML_TOO_MANY_NODES, place,
-		         "wanted at most %d nodes, each alias counted as all that it stands for; found more from here on",
-		         DOCUMENT_LIMIT_NODES);
+		         "wanted at most %d nodes, each alias counted as all that it stands for, and as one more for every %d"
+		         " bytes of a text; found more from here on", DOCUMENT_LIMIT_NODES, ALIAS_TEXT_BYTES);
 		return false;
 	}
 	tree->nodes += nodes;
@@ -167,7 +172,8 @@ bool tree_add_scalar(struct tree *tree, struct place place, const char *text, si
 	if (node == NULL || !define_anchor(tree, name, node, &anchor))
 		return false;
 	if (anchor != NULL)
-		anchor->nodes = 1;
+		anchor->nodes = 1 + length / ALIAS_TEXT_BYTES;
+	tree->texts += length / ALIAS_TEXT_BYTES;
 	return attach(tree, node, place);
 }
 
@@ -249,7 +255,7 @@ bool tree_open(struct tree *tree, enum node_kind kind, struct place place, const
 		return false;
 	tree->frames[tree->depth++] = (struct frame){.node = node, .anchor = anchor, .height = 1,
 	                                             .first_child = tree->child_count,
-	                                             .nodes_before = nodes_before};
+	                                             .nodes_before = nodes_before, .texts_before = tree->texts};
 	return true;
 }
 
@@ -337,7 +343,7 @@ bool tree_close(struct tree *tree)
 
 	tree->child_count = frame->first_child;
 	if (frame->anchor != NULL) {
-		frame->anchor->nodes = tree->nodes - frame->nodes_before;
+		frame->anchor->nodes = tree->nodes - frame->nodes_before + tree->texts - frame->texts_before;
 		frame->anchor->height = frame->height;
 	}
 	note_height(tree, frame->height);

@@ -106,6 +106,7 @@ static void counts_tell_errors_from_notices(void **state)
 	struct source source = source_of("a", "b\n");
 	struct diagnostics *diagnostics = diagnostics_create();
 	assert_int_equal(diagnostics_count(diagnostics), 0);
+	assert_false(diagnostics_take_hint(diagnostics));
 	diagnose(diagnostics, RULE_UNUSED_LINE, at(&source, 1, 1), "line type 'spare' is not used");
 	assert_int_equal(diagnostics_error_count(diagnostics), 0);
 	diagnose(diagnostics, RULE_WIRE_DOUBLED, at(&source, 1, 1), "doubled");
@@ -137,8 +138,10 @@ static void what_nobody_reads_is_cut(void **state)
 	assert_string_equal(text_string(&found), text_string(&wanted));
 	text_release(&wanted);
 	text_release(&found);
-	for (size_t index = 1; index < 1003; index++)
+	for (size_t index = 1; index < 1003; index++) {
 		diagnose(diagnostics, RULE_YAML_SYNTAX, at(&source, 0, 0), "again");
+		assert_int_equal(diagnostics_take_hint(diagnostics), index < 1000);
+	}
 	diagnose(diagnostics, RULE_OUT_OF_MEMORY, at(&source, 0, 0), "memory is out");
 	diagnose_hint(diagnostics, "of what is not there");
 	assert_int_equal(diagnostics_error_count(diagnostics), 1004);

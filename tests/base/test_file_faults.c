@@ -8,6 +8,7 @@
 
 #include <errno.h>
 #include <fcntl.h>
+#include <sys/stat.h>
 
 #include "base/arena.h"
 #include "base/file.h"
@@ -19,6 +20,7 @@ static struct {
 	bool interrupt;         // every other call that may be is interrupted first
 	bool interrupted;       // the last one was
 	size_t most_bytes;      // that one read or write moves
+	int directory_error;    // with which the flush of a directory fails; 0 if it does not
 } faults;
 
 static void no_faults(void)
@@ -26,6 +28,7 @@ static void no_faults(void)
 	faults.calls_left = SIZE_MAX;
 	faults.has_failed = faults.interrupt = faults.interrupted = false;
 	faults.most_bytes = SIZE_MAX;
+	faults.directory_error = 0;
 }
 
 static bool call_fails(void)
@@ -78,8 +81,18 @@ static ssize_t faulty_write(int descriptor, const void *bytes, size_t length)
 	return call_is_interrupted() || call_fails() ? -1 : write(descriptor, bytes, at_most(length));
 }
 
+static bool is_a_directory(int descriptor)
+{
+	struct stat status;
+	return fstat(descriptor, &status) == 0 && S_ISDIR(status.st_mode);
+}
+
 static int faulty_fsync(int descriptor)
 {
+	if (faults.directory_error != 0 && is_a_directory(descriptor)) {
+		errno = faults.directory_error;
+		return -1;
+	}
 	return call_is_interrupted() || call_fails() ? -1 : fsync(descriptor);
 }
 
@@ -226,6 +239,47 @@ static void interruptions_and_short_writes_do_no_harm(void **state)
 	}
 }
 
+// Then the files stand under their names, but may not outlive a loss of power.
+static void a_directory_that_is_not_flushed_is_a_failure(void **state)
+{
+	const char *scratch = *state;
+	struct arena *arena = arena_create();
+	struct write_failure failure = {0};
+	bool kept[3];
+	put_old(scratch);
+	no_faults();
+	faults.directory_error = EIO;
+	bool done = write_three(arena, scratch, kept, &failure);
+	no_faults();
+	assert_false(done);
+	assert_string_equal(failure.step, "flush");
+	assert_string_equal(failure.path, scratch);
+	assert_int_equal(failure.error, EIO);
+	assert_nothing_is_half_written(scratch, done, &failure);
+	// Nothing was renamed, nothing is to be flushed.
+	faults.directory_error = EIO;
+	done = write_three(arena, scratch, kept, &failure);
+	no_faults();
+	assert_true(done && kept[0] && kept[1] && kept[2]);
+	arena_destroy(arena);
+}
+
+static void a_directory_that_cannot_be_flushed_is_none(void **state)
+{
+	const char *scratch = *state;
+	struct arena *arena = arena_create();
+	struct write_failure failure = {0};
+	bool kept[3];
+	put_old(scratch);
+	no_faults();
+	faults.directory_error = EINVAL;
+	bool done = write_three(arena, scratch, kept, &failure);
+	no_faults();
+	assert_true(done);
+	assert_nothing_is_half_written(scratch, done, &failure);
+	arena_destroy(arena);
+}
+
 static void a_disk_that_takes_nothing_is_full(void **state)
 {
 	const char *scratch = *state;
@@ -251,6 +305,8 @@ int main(void)
 		in_scratch(every_failing_call_leaves_whole_files),
 		in_scratch(a_failing_mkdir_names_the_directory),
 		in_scratch(interruptions_and_short_writes_do_no_harm),
+		in_scratch(a_directory_that_is_not_flushed_is_a_failure),
+		in_scratch(a_directory_that_cannot_be_flushed_is_none),
 		in_scratch(a_disk_that_takes_nothing_is_full),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);

@@ -277,6 +277,60 @@ static void test_random_wires(void **state)
 	bench_destroy(bench);
 }
 
+// The largest part: the state is on its highest pins, A24 and A25, so the image is four blocks of 16 MiB.
+static void test_highest_pins(void **state)
+{
+	(void)state;
+	struct bench *bench = create_four();
+	struct chip *chip = add_chip(bench, 26, 8);
+	chip->address[24] = (struct address_wire)STATE(1);
+	chip->address[25] = (struct address_wire)STATE(0);
+	memcpy(chip->data, (const struct data_wire[]){NEXT(0), NEXT(1), {DATA_SIGNAL, 0}, {DATA_SIGNAL, 1}},
+	       4 * sizeof *chip->data);
+	struct image image;
+	assert_true(images_fill(bench_table(bench), bench->arena, &image));
+	assert_int_equal(image.length, 67108864);
+	const size_t block = 16777216;
+	const uint8_t expected[] = {
+		0xF5, // state 0: next 01, sync high, blank low; D4 to D7 open: 1
+		0xFB, // A24, state 2: next 11, sync low, blank high
+		0xF6, // A25, state 1: next 10, sync high, blank low
+		0xFC, // both, state 3: next 00, sync high, blank high
+	};
+	for (size_t index = 0; index < 4; index++) {
+		const uint8_t *bytes = image.bytes + index * block;
+		assert_int_equal(bytes[0], expected[index]);
+		assert_int_equal(memcmp(bytes, bytes + 1, block - 1), 0);
+	}
+	bench_destroy(bench);
+}
+
+// As many states as there may be: the highest bit of the state is in the address and in next. The frame begins at
+// 0x800000, where the spare rows lead too, and goes by 0x7FFFFF.
+static void test_highest_state_bit(void **state)
+{
+	(void)state;
+	struct bench *bench = bench_create(24, 2);
+	const size_t sync = bench_data(bench, "sync"), all = bench_field(bench, "all", 23, 0);
+	bench_start(bench, 0x800000);
+	bench_region(bench, "sync", 1, SIGNAL(sync));
+	bench_region(bench, "rest", 1, 0);
+	bench_hold(bench, all, 0x7FFFFF, 0);
+	struct chip *chip = add_chip(bench, 24, 8);
+	for (unsigned pin = 0; pin < 24; pin++)
+		chip->address[pin] = (struct address_wire)STATE(pin);
+	memcpy(chip->data, (const struct data_wire[]){NEXT(23), NEXT(22), NEXT(16), NEXT(15), NEXT(0), {DATA_SIGNAL, 0}},
+	       6 * sizeof *chip->data);
+	struct image image;
+	assert_true(images_fill(bench_table(bench), bench->arena, &image));
+	assert_int_equal(image.length, 16777216);
+	assert_int_equal(image.bytes[0x800000], 0xDE); // next 0x7FFFFF: not bit 23, but 22, 16, 15 and 0; no sync
+	assert_int_equal(image.bytes[0x7FFFFF], 0xE1); // next 0x800000: bit 23 alone; sync
+	assert_int_equal(image.bytes[0], 0xE1);        // so do spare rows
+	assert_int_equal(image.bytes[0xFFFFFF], 0xE1);
+	bench_destroy(bench);
+}
+
 // Check value of CRC-32/ISO-HDLC: Greg Cook, "Catalogue of parametrised CRC algorithms". The sum: 0x31 + … + 0x39.
 static void test_checksums(void **state)
 {
@@ -297,7 +351,8 @@ int main(void)
 		cmocka_unit_test(test_straight),     cmocka_unit_test(test_scrambled),
 		cmocka_unit_test(test_sixteen_bits), cmocka_unit_test(test_sixteen_bits_straight),
 		cmocka_unit_test(test_counter),      cmocka_unit_test(test_spare_rows),
-		cmocka_unit_test(test_random_wires), cmocka_unit_test(test_checksums),
+		cmocka_unit_test(test_random_wires), cmocka_unit_test(test_highest_pins),
+		cmocka_unit_test(test_highest_state_bit), cmocka_unit_test(test_checksums),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }

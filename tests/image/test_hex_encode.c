@@ -115,6 +115,33 @@ static void an_address_record_stands_at_each_64_kib(void **state)
 	free(image);
 }
 
+// From 16 MiB on the upper byte of an address record is in use (derived: 02 + 04 + 01 = 07, F9).
+static void an_address_record_has_two_bytes(void **state)
+{
+	(void)state;
+	const size_t length = 0x1000001;
+	uint8_t *image = calloc(1, length);
+	assert_non_null(image);
+	image[length - 1] = 0x5A; // 01 + 5A = 5B, A5
+	struct text text = {0};
+	hex_encode(image, length, 32, &text);
+	assert_false(text.failed);
+	static const char last[] = ":020000040100F9\n:010000005AA5\n:00000001FF\n";
+	assert_true(text.length > strlen(last));
+	assert_string_equal(text.bytes + text.length - strlen(last), last);
+	// Before it, the last record of the 16 MiB; 256 segments begin with 00FF (derived: 02 + 04 + FF = 105, FB).
+	assert_memory_equal(text.bytes + text.length - strlen(last) - 76, ":20FFE000", 9);
+	assert_non_null(strstr(text.bytes, ":0200000400FFFB\n:20000000"));
+	struct hex_result result;
+	memset(image, 0xFF, length);
+	assert_int_equal(hex_decode(text.bytes, text.length, image, length, &result), HEX_OK);
+	assert_int_equal(result.missing, 0);
+	assert_int_equal(image[0], 0);
+	assert_int_equal(image[length - 1], 0x5A);
+	text_release(&text);
+	free(image);
+}
+
 // Every data record says where it is; none may reach past 64 KiB, together they are the image.
 static void assert_no_record_crosses(const uint8_t *image, size_t length, unsigned record)
 {
@@ -205,6 +232,7 @@ int main(void)
 		cmocka_unit_test(records_of_32_bytes),
 		cmocka_unit_test(what_was_put_before_stays),
 		cmocka_unit_test(an_address_record_stands_at_each_64_kib),
+		cmocka_unit_test(an_address_record_has_two_bytes),
 		cmocka_unit_test(no_record_crosses_64_kib),
 		cmocka_unit_test(every_image_comes_back),
 	};

@@ -4,6 +4,8 @@
 #include <stdint.h>
 #include <cmocka.h>
 
+#include <stdlib.h>
+
 #include "base/arena.h"
 #include "catalogue/catalogue.h"
 #include "machine/machine.h"
@@ -201,6 +203,74 @@ static void counter_with_async_clear(void **test)
 	arena_destroy(arena);
 }
 
+// The largest parts, the state on their highest pins A24 and A25, with A1 high: a byte of each quarter of 64 MiB, a word
+// of each of 128. Most of the memory is never touched.
+static void highest_pins(void **test)
+{
+	(void)test;
+	static const struct part parts[] = {{.name = "narrow", .address_pins = 26, .data_pins = 8},
+	                                    {.name = "wide", .address_pins = 26, .data_pins = 16}};
+	for (size_t index = 0; index < 2; index++) {
+		const size_t width = index + 1, quarter = ((size_t)1 << 24) * width;
+		struct image image = {calloc(4, quarter), 4 * quarter};
+		assert_non_null(image.bytes);
+		struct chip chip = {.label = "rom0", .part = &parts[index], .data = {{DATA_NEXT, 0}, {DATA_NEXT, 1}, {DATA_SIGNAL, 0}}};
+		chip.address[1].kind = ADDRESS_HIGH;
+		chip.address[24] = (struct address_wire){ADDRESS_STATE, 1};
+		chip.address[25] = (struct address_wire){ADDRESS_STATE, 0};
+		image.bytes[2 * width] = 0x01;               // state 0: next 01
+		image.bytes[2 * quarter + 2 * width] = 0x06; // A25, state 1: next 10, signal high
+		image.bytes[quarter + 2 * width] = 0x07;     // A24, state 2: next 11, signal high
+		image.bytes[3 * quarter + 2 * width] = 0x00; // both, state 3: next 00
+		struct wiring wiring = {.chips = &chip, .chip_count = 1, .state_bits = 2, .data_signals = 1};
+		struct arena *arena = arena_create();
+		struct machine *machine = create(arena, &wiring, &image, 0);
+		uint32_t next[4];
+		machine_all_next(machine, next, 1);
+		for (uint32_t state = 0; state < 4; state++) {
+			assert_row(machine, state, (state + 1) % 4, false, state == 1 || state == 2);
+			assert_int_equal(machine_next(machine, state), (state + 1) % 4);
+			assert_int_equal(next[state], (state + 1) % 4);
+		}
+		assert_int_equal(machine_address(machine, 3, 0), 3 * quarter + 2 * width);
+		arena_destroy(arena);
+		free(image.bytes);
+	}
+}
+
+// As many state bits as there may be: 0x800000 → 0x7FFFFF → 0x800000, and everything else leads to 0. Next 23 is D0
+// of the first chip, next 22 D1, and so on to next 0, D7 of the third.
+static void highest_state_bit(void **test)
+{
+	(void)test;
+	static const struct part part = {.name = "large", .address_pins = 24, .data_pins = 8};
+	struct image images[3];
+	struct chip chips[3];
+	for (unsigned chip = 0; chip < 3; chip++) {
+		images[chip] = (struct image){calloc(1, (size_t)1 << 24), (size_t)1 << 24};
+		assert_non_null(images[chip].bytes);
+		chips[chip] = (struct chip){.label = "rom", .part = &part};
+		for (unsigned pin = 0; pin < 24; pin++)
+			chips[chip].address[pin] = (struct address_wire){ADDRESS_STATE, pin};
+		for (unsigned pin = 0; pin < 8; pin++)
+			chips[chip].data[pin] = (struct data_wire){DATA_NEXT, 23 - (chip * 8 + pin)};
+		images[chip].bytes[0x800000] = chip == 0 ? 0xFE : 0xFF;
+		images[chip].bytes[0x7FFFFF] = chip == 0 ? 0x01 : 0x00;
+	}
+	struct wiring wiring = {.chips = chips, .chip_count = 3, .state_bits = 24};
+	struct arena *arena = arena_create();
+	struct machine *machine = create(arena, &wiring, images, 0);
+	assert_int_equal(machine_next(machine, 0x800000), 0x7FFFFF);
+	assert_int_equal(machine_next(machine, 0x7FFFFF), 0x800000);
+	assert_row(machine, 0x7FFFFF, 0x800000, false, 0);
+	assert_row(machine, 0x800000, 0x7FFFFF, false, 0);
+	assert_int_equal(machine_next(machine, 0), 0);
+	assert_int_equal(machine_next(machine, 0xFFFFFF), 0);
+	arena_destroy(arena);
+	for (unsigned chip = 0; chip < 3; chip++)
+		free(images[chip].bytes);
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
@@ -210,6 +280,8 @@ int main(void)
 		cmocka_unit_test(pins_that_no_state_drives),
 		cmocka_unit_test(counter_with_sync_clear),
 		cmocka_unit_test(counter_with_async_clear),
+		cmocka_unit_test(highest_pins),
+		cmocka_unit_test(highest_state_bit),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }

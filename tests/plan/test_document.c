@@ -190,6 +190,7 @@ static void takes_directives_and_document_marks(void **state)
 	assert_place(parsed, node_value(parsed->root, "name"), 3, 7);
 	parsed_release(parsed);
 	parsed_release(parse_good("%YAML 1.1\n--- {a: 1}\n"));
+	parsed_release(parse_good("--- 'a\n%TAG ! x'\n"));
 }
 
 // ---- Limits ----
@@ -314,6 +315,47 @@ static void limits_the_nodes_through_aliases(void **state)
 	assert_outcome(&text, RULE_YAML_TOO_MANY_NODES);
 }
 
+// Mapping and two keys, a text of so many bytes, a list of aliases of it or of a list that holds it.
+static void put_aliased_text(struct text *text, size_t bytes, const char *open, const char *close, size_t aliases)
+{
+	text_printf(text, "a: &a %s", open);
+	text_put_repeated(text, 'x', bytes);
+	text_printf(text, "%s\nb: [", close);
+	put_repeated_text(text, "*a, ", aliases);
+	text_put(text, "]\n");
+}
+
+// An alias of a list of two aliases, each of which counts 201.
+static void put_nested_texts(struct text *text, size_t aliases)
+{
+	put_aliased_text(text, 64 * 200, "", "", 0);
+	text_put(text, "c: &c [*a, *a]\nd: [");
+	put_repeated_text(text, "*c, ", aliases);
+	text_put(text, "]\n");
+}
+
+static void limits_the_texts_of_aliases(void **state)
+{
+	struct text text = {0};
+
+	(void)state;
+	put_aliased_text(&text, 63, "", "", 99995);             // 5 + 99,995
+	assert_outcome(&text, RULE_COUNT);
+	put_aliased_text(&text, 64 * 32, "", "", 3030);         // 5 + 3,030 * 33
+	assert_outcome(&text, RULE_COUNT);
+	put_aliased_text(&text, 64 * 32, "", "", 3031);
+	assert_outcome(&text, RULE_YAML_TOO_MANY_NODES);
+	put_aliased_text(&text, 64 * 31, "[", "]", 3030);       // 6 + 3,030 * (2 + 31)
+	assert_outcome(&text, RULE_COUNT);
+	put_aliased_text(&text, 64 * 31, "[", "]", 3031);
+	assert_outcome(&text, RULE_YAML_TOO_MANY_NODES);
+	// What an alias counts is counted again where that is repeated: 5 + 1 + 403 + 2 + 247 * 403.
+	put_nested_texts(&text, 247);
+	assert_outcome(&text, RULE_COUNT);
+	put_nested_texts(&text, 248);
+	assert_outcome(&text, RULE_YAML_TOO_MANY_NODES);
+}
+
 // Ten to the power of 30 nodes.
 static void stands_an_alias_bomb(void **state)
 {
@@ -419,6 +461,7 @@ int main(void)
 		cmocka_unit_test(limits_the_levels_through_aliases),
 		cmocka_unit_test(limits_the_nodes),
 		cmocka_unit_test(limits_the_nodes_through_aliases),
+		cmocka_unit_test(limits_the_texts_of_aliases),
 		cmocka_unit_test(stands_an_alias_bomb),
 		cmocka_unit_test(takes_a_mapping_of_many_keys),
 		cmocka_unit_test(reports_each_of_many_duplicates),

@@ -69,7 +69,23 @@ static const struct refused_text refused_texts[] = {
 	 "  %TAG ! x\n"
 	 "  ^\n"},
 	{TEXT("%TAG x\n"),
-	 "plan:1:1: error: wanted no directive but %YAML, found '%TAG x' [yaml-tag]\n"
+	 "plan:1:1: error: wanted no directive but %YAML, found %TAG [yaml-tag]\n"
+	 "  %TAG x\n"
+	 "  ^\n"},
+	{TEXT("# c\n" "%TAG !a! x\n" "%TAG !a! y\n" "--- a\n"),
+	 "plan:2:1: error: wanted no directive but %YAML, found %TAG [yaml-tag]\n"
+	 "  %TAG !a! x\n"
+	 "  ^\n"},
+	{TEXT("a: b\n" "%TAG ! x\n" "--- c\n"),
+	 "plan:2:1: error: wanted no directive but %YAML, found %TAG [yaml-tag]\n"
+	 "  %TAG ! x\n"
+	 "  ^\n"},
+	{TEXT("a: b\n" "... # end\n" "\n" "...\n" "%YAML 1.1\n" "%TAG ! x\n" "--- c\n"),
+	 "plan:6:1: error: wanted no directive but %YAML, found %TAG [yaml-tag]\n"
+	 "  %TAG ! x\n"
+	 "  ^\n"},
+	{TEXT("[a,\n" "%TAG x\n" "]\n"),
+	 "plan:2:1: error: wanted no directive but %YAML, found '%TAG x' [yaml-tag]\n"
 	 "  %TAG x\n"
 	 "  ^\n"},
 	{TEXT("%FOO x\n" "--- a\n"),

@@ -112,6 +112,36 @@ static void the_chip_with_the_wrong_bits(void **test)
 	by_hand_destroy(hand);
 }
 
+// Four banks. In bank 1, 5 → 6 → 7 → 6: three states are lost; in bank 2, 7 → 7: one. Bank 1 is shown, whose rows are at
+// addresses 8 to 15.
+static void lost_states_of_all_banks(void **test)
+{
+	(void)test;
+	struct by_hand *hand = small_board();
+	hand->plan.bank_bits = 2;
+	add_straight_chips(hand);
+	for (uint32_t bank = 0; bank < 4; bank++)
+		for (uint32_t state = 0; state < 8; state++)
+			burn_row(hand, bank, state, state < 4 ? state + 1 : 0, false, small_pins[state < 4 ? state + 1 : 0]);
+	burn_row(hand, 1, 5, 6, false, 0);
+	burn_row(hand, 1, 6, 7, false, 0);
+	burn_row(hand, 1, 7, 6, false, 0);
+	burn_row(hand, 2, 7, 7, false, 0);
+	struct proofs *proofs = prove(hand, 0);
+	const struct power_up_result *result = &proofs->power_up;
+	assert_verdict(proofs, PROOF_POWER_UP, VERDICT_FAIL);
+	assert_int_equal(result->states, 32);
+	assert_int_equal(result->lost_states, 4);
+	assert_int_equal(result->second_loop_state, 6);
+	assert_int_equal(result->second_loop_cells, 2);
+	const struct counterexample *found = &proofs->proof[PROOF_POWER_UP].counterexample;
+	assert_int_equal(found->bank, 1);
+	assert_int_equal(found->state, 6);
+	assert_int_equal(found->byte.address, 14);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
 static void not_judged_unless_closed(void **test)
 {
 	(void)test;
@@ -371,6 +401,7 @@ int main(void)
 		cmocka_unit_test(a_second_loop),
 		cmocka_unit_test(loops_of_one_state),
 		cmocka_unit_test(the_chip_with_the_wrong_bits),
+		cmocka_unit_test(lost_states_of_all_banks),
 		cmocka_unit_test(not_judged_unless_closed),
 		cmocka_unit_test(passing_states_settle_first),
 		cmocka_unit_test(counter_overflows),
