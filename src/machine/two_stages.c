@@ -24,10 +24,10 @@ struct two_stages {
 
 static bool read_rows(struct arena *arena, const struct machine *machine, enum stage stage, struct stage_table *table, uint32_t *kinds)
 {
-	const struct stage_wiring *wiring = wiring_stage(&machine->wiring, stage);
-	const size_t addresses = (size_t)1 << wiring->address_bits;
-	*table = (struct stage_table){.state_mask = ((uint32_t)1 << wiring->state_bits) - 1, .advance = wiring->advance,
-	                              .at_once = clears_at_once(wiring)};
+	const struct stage_wiring *wired = wiring_stage(&machine->wiring, stage);
+	const size_t addresses = (size_t)1 << wired->address_bits;
+	*table = (struct stage_table){.state_mask = ((uint32_t)1 << wired->state_bits) - 1, .advance = wired->advance,
+	                              .at_once = clears_at_once(wired)};
 	table->rows = arena_array(arena, addresses, sizeof *table->rows);
 	for (size_t address = 0; table->rows != NULL && address < addresses; address++) {
 		const struct row row = machine_row(machine, stage, (uint32_t)address);

@@ -5,6 +5,7 @@
 #include "base/arena.h"
 #include "proof/exchange.h"
 #include "proof/jump.h"
+#include "proof/line_frame.h"
 
 // `bytes`: the bytes that hold the next state, in words: " (…)", or nothing.
 static const char *back_too_early(const struct trial *trial, const char *bytes)
@@ -59,7 +60,7 @@ static bool find_repeat(const struct trial *trial, uint32_t *cell, uint32_t *use
 // The bytes that hold the next state of a state, unless they are healthy. NULL when memory is out.
 static const char *bytes_to_blame(const struct trial *trial, uint32_t state, bool healthy)
 {
-	const char *bytes = healthy ? "" : next_bytes(trial, state);
+	const char *bytes = healthy ? "" : next_bytes(trial, STAGE_LINE, state);
 	return healthy || bytes == NULL ? bytes : arena_format(trial->proofs->arena, " (%s)", bytes);
 }
 
@@ -180,6 +181,18 @@ static bool line_fails(struct trial *trial, struct line_fault *line, uint32_t wr
 	return proof_fails(trial, PROOF_CLOSURE, line->found);
 }
 
+// The stages' numbers tell for certain where they went astray.
+static bool stages_fail(struct trial *trial, struct line_fault *line, uint32_t wrong_before)
+{
+	struct counterexample found = line_frame_departure(trial);
+	if (!found.present)
+		return !line->found.present || line_fails(trial, line, wrong_before);
+	trial->departed_cell = found.cell + 1;
+	if (line->shown_at <= found.cell)
+		return line_fails(trial, line, wrong_before);
+	return proof_fails(trial, PROOF_CLOSURE, found);
+}
+
 bool prove_closure(struct trial *trial)
 {
 	struct closure_result *result = &trial->proofs->closure;
@@ -190,6 +203,8 @@ bool prove_closure(struct trial *trial)
 	}
 	struct line_fault line = find_line_fault(trial);
 	const uint32_t wrong_before = signals_first_cell(trial);
+	if (trial->wiring.form == FORM_LINE_FRAME)
+		return stages_fail(trial, &line, wrong_before);
 	if (!trial->lap.closed)
 		return loop_fails(trial, &line, wrong_before);
 	return !line.found.present || line_fails(trial, &line, wrong_before);

@@ -105,6 +105,8 @@ bool find_exchange(const struct trial *trial, const char **hint)
 	const bool search = !trial->has_start && count_pairs(trial) <= SEARCHED_STATES >> trial->wiring.line.state_bits;
 	bool tried = true, right_lap = false;
 	*hint = NULL;
+	if (trial->wiring.form == FORM_LINE_FRAME)
+		return true; // their laps are not tried
 	for (size_t right = 1; tried && right < trial->wiring.chip_count; right++) {
 		for (size_t left = 0; tried && left < right; left++) {
 			if (!may_exchange(trial, left, right))

@@ -210,7 +210,7 @@ bool prove_glitches(struct trial *trial)
 		result->settle_s = unsettled(trial, trial->timeline->plan->timing.decoder_delay_s);
 	if (trial->wiring.line.outputs == OUTPUTS_DIRECT)
 		measure_direct(trial, result);
-	if (trial->wiring.line.advance == ADVANCE_COUNT && trial->wiring.line.clear == CLEAR_ASYNC)
+	if (clears_at_once(&trial->wiring.line))
 		measure_clear(trial, result);
 	if (!result->has_field_signals && !result->direct && !result->async_clear)
 		trial->proofs->proof[PROOF_GLITCHES].verdict = VERDICT_ABSENT;

@@ -1,5 +1,5 @@
 #include "base/arena.h"
-#include "proof/trial.h"
+#include "proof/line_frame.h"
 
 static bool lap_alloc(struct trial *trial)
 {
@@ -15,6 +15,10 @@ bool lap_run(struct trial *trial, uint32_t start)
 {
 	if (!lap_alloc(trial))
 		return false;
+	if (trial->wiring.form == FORM_LINE_FRAME) {
+		line_frame_lap(trial, start);
+		return true;
+	}
 	struct lap *lap = &trial->lap;
 	const uint32_t cells = trial->timeline->cell_count;
 	const uint64_t data = trial->wiring.line.data_signals, inverted = levels_of(trial->timeline->plan, 0);

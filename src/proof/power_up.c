@@ -22,21 +22,37 @@ static void note_longest(struct trial *trial, struct power_up_result *result)
 // The states that a counter with an async clear passes through in no time.
 static uint64_t count_cleared(const struct trial *trial)
 {
-	const uint32_t states = (uint32_t)1 << trial->wiring.line.state_bits;
+	const uint32_t states = (uint32_t)1 << trial->at.bits;
 	uint64_t count = 0;
-	if (trial->wiring.line.advance == ADVANCE_COUNT && trial->wiring.line.clear == CLEAR_ASYNC)
+	if (clears_at_once(&trial->wiring.line) || clears_at_once(&trial->wiring.frame))
 		for (uint32_t state = 0; state < states; state++)
 			count += machine_settle(trial->machine, state) != state;
 	return count;
+}
+
+// Whether a loop of a line-frame machine keeps to one line for ever.
+static bool never_steps(const struct trial *trial)
+{
+	uint32_t state = trial->ways->second_loop_state;
+	bool steps = trial->wiring.form == FORM_LOOP;
+	for (uint32_t left = trial->ways->second_loop_cells; left > 0 && !steps; left--) {
+		steps = machine_steps(trial->machine, state);
+		state = machine_next(trial->machine, state);
+	}
+	return !steps;
 }
 
 static bool loop_fails(struct trial *trial)
 {
 	const struct ways *ways = trial->ways;
 	struct counterexample found = blame_loop(trial, ways->second_loop_state);
+	const char *state = state_words(trial, ways->second_loop_state);
+	if (state == NULL)
+		found.what = NULL;
 	if (found.what != NULL)
-		found.what = arena_format(trial->proofs->arena, "state 0x%" PRIX32 " is on a second loop of %" PRIu32 " cell%s: %s",
-		                          found.state, ways->second_loop_cells, ways->second_loop_cells == 1 ? "" : "s", found.what);
+		found.what = arena_format(trial->proofs->arena, "state %s is on a second loop of %" PRIu32 " cell%s%s: %s", state,
+		                          ways->second_loop_cells, ways->second_loop_cells == 1 ? "" : "s",
+		                          never_steps(trial) ? " in which no row asserts step" : "", found.what);
 	return proof_fails(trial, PROOF_POWER_UP, found);
 }
 
@@ -50,7 +66,7 @@ bool prove_power_up(struct trial *trial)
 	trial->ways = ways_find(trial->arena, trial->machine, &trial->wiring, trial->lap.states, trial->lap.return_cells);
 	if (trial->ways == NULL)
 		return false;
-	result->states += (uint64_t)1 << trial->wiring.line.state_bits;
+	result->states += (uint64_t)1 << trial->at.bits;
 	result->cleared_states += count_cleared(trial);
 	if (trial->lap.return_cells > result->frame_states)
 		result->frame_states = trial->lap.return_cells;

@@ -2,7 +2,7 @@
 
 #include "base/arena.h"
 #include "proof/frame_find.h"
-#include "proof/trial.h"
+#include "proof/line_frame.h"
 
 struct proof_row {
 	const char *name;
@@ -83,7 +83,9 @@ static bool trial_prove(struct trial *trial, bool has_start, uint32_t start)
 	trial->machine = machine_create(trial->arena, &trial->wiring, trial->images, trial->bank);
 	if (trial->machine == NULL)
 		return false;
-	if (!has_start && !frame_find(trial->arena, trial->timeline, &trial->wiring, trial->machine, trial->expected,
+	if (trial->wiring.form == FORM_LINE_FRAME)
+		start = line_frame_start(trial, has_start, start);
+	else if (!has_start && !frame_find(trial->arena, trial->timeline, &trial->wiring, trial->machine, trial->expected,
 	                              trial->decoders, &start))
 		return false;
 	trial->has_start = has_start;
@@ -128,9 +130,11 @@ struct proofs *proofs_run(const struct timeline *timeline, const struct image *i
 	struct trial trial = {.proofs = proofs, .timeline = timeline, .images = images};
 	trial.wiring = wiring_of(timeline->plan);
 	trial.expected = timeline_pins(timeline, proofs->arena);
-	trial.period = timeline_period(timeline);
+	trial.at = feedback_of(&trial.wiring);
+	trial.period = trial.wiring.form == FORM_LINE_FRAME ? timeline->cell_count : timeline_period(timeline);
 	trial.decoders = decoders_create(proofs->arena, timeline->plan);
-	bool ready = trial.expected != NULL && trial.period != 0 && trial.decoders != NULL;
+	bool ready = trial.expected != NULL && trial.period != 0 && trial.decoders != NULL &&
+	             (trial.wiring.form == FORM_LOOP || line_frame_number(&trial));
 	if (!ready || !prove_banks(&trial, has_start, start_state)) {
 		proofs_destroy(proofs);
 		return NULL;

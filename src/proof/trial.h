@@ -38,7 +38,10 @@ struct trial {
 	struct arena *arena;          // of this trial; words of counterexamples go to the proofs' arena
 	const struct image *images;
 	struct wiring wiring;
+	struct feedback at;           // where the parts of a state lie
 	const struct machine *machine;
+	const uint32_t *numbered;     // [cell_count]: the bits of the state that count lines and cells, as planned; NULL in a loop machine
+	uint32_t numbered_bits;       // which bits these are
 	uint32_t bank;
 	bool has_start;               // the plan's; otherwise `start` was found in the images
 	uint32_t start;
@@ -81,6 +84,8 @@ void proof_not_judged(struct trial *trial, enum proof_kind kind, const char *rea
 // successor finds itself. They name the state whose row was read and the byte that stands there. Cannot fail.
 struct counterexample blame_pin(const struct trial *trial, uint32_t cell, size_t signal);
 struct counterexample blame_next(const struct trial *trial, uint32_t cell, uint32_t wrong_bits);
+// The same for the pin of step at a cell.
+struct counterexample blame_step(const struct trial *trial, uint32_t cell);
 // Turns a counterexample whose words are made into one that may only follow from an earlier fault that another proof
 // shows: it names no row and no byte. Its words are NULL when memory is out.
 void blame_other_proof(const struct trial *trial, enum proof_kind kind, struct counterexample *found);
@@ -94,7 +99,9 @@ uint32_t wrong_held_bits(const struct trial *trial, uint32_t cell, uint32_t stat
 uint32_t signals_first_cell(const struct trial *trial);
 // The bytes of all chips that carry the next state (or clear) of a state, in words: "U7 0x01A3: 0x5B and U8 0x01A3:
 // 0x00". In the proofs' arena; NULL when memory is out.
-const char *next_bytes(const struct trial *trial, uint32_t state);
+const char *next_bytes(const struct trial *trial, enum stage stage, uint32_t address);
+// A state in words: "0x1A3"; of a line-frame machine "H 0x5, step 0, kind 1, V 0x20C". In the proofs' arena; NULL when memory is out.
+const char *state_words(const struct trial *trial, uint32_t state);
 // A counterexample at a state of a second loop, without a cell. Its words, "its next state is …", say what would mend its
 // row, and are NULL when memory is out.
 struct counterexample blame_loop(const struct trial *trial, uint32_t state);

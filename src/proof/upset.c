@@ -63,14 +63,14 @@ static uint32_t slip_of(uint32_t entry, uint32_t cell, uint32_t cells, uint32_t 
 static void upset_state(const struct trial *trial, struct tally *tally, uint32_t state, uint32_t cell)
 {
 	const uint32_t period = trial->lap.return_cells;
-	for (unsigned bit = 0; bit < trial->wiring.line.state_bits; bit++) {
+	for (unsigned bit = 0; bit < trial->at.bits; bit++) {
 		struct way way = ways_of(trial->ways, state ^ (uint32_t)1 << bit);
 		if (way.lost)
 			tally_lost(tally, cell, bit);
 		else
 			tally_regained(tally, cell, bit, way.cells, slip_of(way.entry, cell, way.cells, period));
 	}
-	tally->result->upsets += trial->wiring.line.state_bits;
+	tally->result->upsets += trial->at.bits;
 }
 
 // All states of the frame: in their order around it, or, where it fills much of the state space, in ascending order, in
@@ -78,8 +78,8 @@ static void upset_state(const struct trial *trial, struct tally *tally, uint32_t
 // state.
 static void upset_frame(const struct trial *trial, struct tally *tally)
 {
-	const uint32_t period = trial->lap.return_cells, states = (uint32_t)1 << trial->wiring.line.state_bits;
-	const bool passes = trial->wiring.line.advance == ADVANCE_COUNT && trial->wiring.line.clear == CLEAR_ASYNC;
+	const uint32_t period = trial->lap.return_cells, states = (uint32_t)1 << trial->at.bits;
+	const bool passes = clears_at_once(&trial->wiring.line) || clears_at_once(&trial->wiring.frame);
 	if (period < states / 16 || passes) {
 		for (uint32_t cell = 0; cell < period; cell++)
 			upset_state(trial, tally, trial->lap.states[cell], cell);
@@ -124,12 +124,15 @@ static uint32_t state_of_loop(const struct machine *machine, uint32_t state)
 static bool upset_fails(struct trial *trial, const struct tally *tally)
 {
 	const uint32_t before = trial->lap.states[tally->lost_cell], after = before ^ (uint32_t)1 << tally->lost_bit;
-	struct counterexample found = blame_loop(trial, state_of_loop(trial->machine, after));
+	const uint32_t looping = state_of_loop(trial->machine, after);
+	struct counterexample found = blame_loop(trial, looping);
+	const char *was = state_words(trial, before), *is = state_words(trial, after), *loops = state_words(trial, looping);
 	found.cell = tally->lost_cell;
+	if (was == NULL || is == NULL || loops == NULL)
+		found.what = NULL;
 	if (found.what != NULL)
-		found.what = arena_format(trial->proofs->arena, "with bit %u flipped, state 0x%" PRIX32 " becomes 0x%" PRIX32
-		                          ", from which the frame is never regained: state 0x%" PRIX32 " is on a second loop, %s",
-		                          tally->lost_bit, before, after, found.state, found.what);
+		found.what = arena_format(trial->proofs->arena, "with bit %u flipped, state %s becomes %s, from which the frame is never "
+		                          "regained: state %s is on a second loop, %s", tally->lost_bit, was, is, loops, found.what);
 	return proof_fails(trial, PROOF_UPSET, found);
 }
 

@@ -268,6 +268,8 @@ static struct chase *chase_create(struct arena *arena, uint32_t states)
 struct ways *ways_find(struct arena *arena, const struct machine *machine, const struct wiring *wiring,
                        const uint32_t *frame_states, uint32_t frame_count)
 {
+	if (wiring->form == FORM_LINE_FRAME)
+		return stage_ways_find(arena, machine, wiring, frame_states, frame_count);
 	struct chase *chase = chase_create(arena, (uint32_t)1 << wiring->line.state_bits);
 	if (chase == NULL)
 		return NULL;

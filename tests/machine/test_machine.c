@@ -222,7 +222,7 @@ static void highest_pins(void **test)
 		image.bytes[2 * quarter + 2 * width] = 0x06; // A25, state 1: next 10, signal high
 		image.bytes[quarter + 2 * width] = 0x07;     // A24, state 2: next 11, signal high
 		image.bytes[3 * quarter + 2 * width] = 0x00; // both, state 3: next 00
-		struct wiring wiring = {.chips = &chip, .chip_count = 1, .state_bits = 2, .data_signals = 1};
+		struct wiring wiring = {.chips = &chip, .chip_count = 1, .line.state_bits = 2, .line.data_signals = 1};
 		struct arena *arena = arena_create();
 		struct machine *machine = create(arena, &wiring, &image, 0);
 		uint32_t next[4];
@@ -257,7 +257,7 @@ static void highest_state_bit(void **test)
 		images[chip].bytes[0x800000] = chip == 0 ? 0xFE : 0xFF;
 		images[chip].bytes[0x7FFFFF] = chip == 0 ? 0x01 : 0x00;
 	}
-	struct wiring wiring = {.chips = chips, .chip_count = 3, .state_bits = 24};
+	struct wiring wiring = {.chips = chips, .chip_count = 3, .line.state_bits = 24};
 	struct arena *arena = arena_create();
 	struct machine *machine = create(arena, &wiring, images, 0);
 	assert_int_equal(machine_next(machine, 0x800000), 0x7FFFFF);
