@@ -11,8 +11,9 @@
 // Where a diagnostic has no source, the program itself speaks.
 #define PROGRAM_NAME "scanlatch"
 
-// A message may quote the plan, which may hold anything; and a plan made to annoy can have more faults than anybody reads.
-#define MESSAGE_BYTES 400
+// Whoever puts a value of the plan into a message shortens it, and this is room for what then remains but lists, which stand last.
+// A plan made to annoy can have more faults than anybody reads.
+#define MESSAGE_CHARACTERS 600
 #define ENTRIES_LIMIT 1000
 
 struct remark {
@@ -117,11 +118,12 @@ static bool reserve_entry(struct diagnostics *diagnostics)
 // The longest prefix of a message that is not too long and does not cut a character of UTF-8.
 static size_t cut_length(const char *bytes, size_t length)
 {
-	if (length <= MESSAGE_BYTES)
-		return length;
-	size_t cut = MESSAGE_BYTES;
-	while (cut > 0 && ((unsigned char)bytes[cut] & 0xC0u) == 0x80u)
-		cut--;
+	size_t cut = 0, characters = 0;
+	for (; cut < length && cut < 4 * MESSAGE_CHARACTERS; cut++) {
+		characters += ((unsigned char)bytes[cut] & 0xC0u) != 0x80u;
+		if (characters > MESSAGE_CHARACTERS)
+			break;
+	}
 	return cut;
 }
 

@@ -31,7 +31,7 @@ struct diagnostics *diagnostics_create(void);
 void diagnostics_destroy(struct diagnostics *diagnostics);
 
 // Adds a diagnostic: lower case, no full stop: what was wanted, what was found. Its severity is the rule's.
-// A message beyond 400 bytes is cut, and diagnostics beyond 1,000 are only counted.
+// A message beyond 600 characters is cut, and diagnostics beyond 1,000 are only counted.
 // Sources must outlive the diagnostics' printing. When memory is out, a fixed out-of-memory diagnostic stands instead.
 __attribute__((format(printf, 4, 5)))
 void diagnose(struct diagnostics *diagnostics, enum rule rule, struct place place, const char *format, ...);

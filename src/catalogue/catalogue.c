@@ -206,7 +206,7 @@ static void check_names(struct reader *reader, const struct node *const *section
 			const struct node *key = node->pairs[index].key;
 			const size_t earlier = earlier_section(sections, section, key->text);
 			if (earlier < section)
-				diagnose(reader->diagnostics, RULE_DOUBLED_NAME, key->place, "\"%s\" is one of the %s too", key->text,
+				diagnose(reader->diagnostics, RULE_DOUBLED_NAME, key->place, "\"%s\" is one of the %s too", SHORT(key->text),
 				         section_keys[earlier].name);
 		}
 	}

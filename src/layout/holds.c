@@ -1,6 +1,7 @@
 #include "layout/layout.h"
 
 #include "base/arena.h"
+#include "plan/characters.h"
 #include "plan/expression.h"
 
 // Where in the frame a region's holds are being evaluated.
@@ -26,12 +27,12 @@ static bool report_value(const struct held_region *held, const struct hold *hold
 	const unsigned cell = held->laid->first_cell + col;
 	if (status != EXPRESSION_OK)
 		line_faults_add(held->faults, RULE_HOLD_VALUE, hold->place, type,
-		                "\"%s\": %s, first in line %u (\"%s\"), cell %u (col %u)", hold->text,
+		                "\"%s\": %s, first in line %u (\"%s\"), cell %u (col %u)", SHORT(hold->text),
 		                expression_status_words(status), held->line_number, type->name, cell, col);
 	else
 		line_faults_add(held->faults, RULE_HOLD_VALUE, hold->place, type,
 		                "\"%s\" is %lld, but field \"%s\" of %u bits holds at most %u; first in line %u (\"%s\"),"
-		                " cell %u (col %u)", hold->text, (long long)value, field->name, field->high - field->low + 1,
+		                " cell %u (col %u)", SHORT(hold->text), (long long)value, field->name, field->high - field->low + 1,
 		                (unsigned)(field_mask(field) >> field->low), held->line_number, type->name, cell, col);
 	return false;
 }

@@ -95,6 +95,29 @@ const char *quotation(char buffer[QUOTATION_BYTES], const char *bytes, size_t le
 	return buffer;
 }
 
+// Bytes of the first characters of a string, no more than so many. Bytes that begin no character count as one each.
+static size_t bytes_of_first(const char *text, size_t characters)
+{
+	size_t bytes = 0;
+
+	for (; characters > 0 && text[bytes] != '\0'; characters--) {
+		uint32_t found;
+		const size_t size = decode(text + bytes, strnlen(text + bytes, 4), &found);
+		bytes += size > 0 ? size : 1;
+	}
+	return bytes;
+}
+
+const char *shortened(char buffer[SHORT_BYTES], const char *text)
+{
+	const size_t bytes = bytes_of_first(text, SHORT_CHARACTERS);
+
+	if (text[bytes] == '\0')
+		return text;
+	snprintf(buffer, SHORT_BYTES, "%.*s...", (int)bytes, text);
+	return buffer;
+}
+
 static bool begins_with(const struct source *source, const char *bytes, size_t length)
 {
 	return source->length >= length && memcmp(source->bytes, bytes, length) == 0;

@@ -14,6 +14,17 @@
 // Puts 'text', cut to 32 characters, into the buffer and returns the buffer. Cannot fail.
 const char *quotation(char buffer[QUOTATION_BYTES], const char *bytes, size_t length);
 
+// Room for a text cut to SHORT_CHARACTERS, with "..." and a NUL.
+#define SHORT_CHARACTERS 60
+#define SHORT_BYTES (4 * SHORT_CHARACTERS + 4)
+
+// A text out of a plan as messages show it, so that a long one leaves room for what is wrong with it: the text itself, or, if it
+// has more than SHORT_CHARACTERS, so many and "..." in the buffer. Cannot fail.
+const char *shortened(char buffer[SHORT_BYTES], const char *text);
+
+// The same in a buffer of the enclosing block, for the arguments of a message.
+#define SHORT(text) shortened((char[SHORT_BYTES]){""}, (text))
+
 // Bytes of the first character of `length` bytes of UTF-8; 0 if length is 0. Cannot fail.
 size_t character_bytes(const char *bytes, size_t length);
 

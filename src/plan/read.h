@@ -3,6 +3,7 @@
 #define SCANLATCH_PLAN_READ_H
 
 #include "catalogue/catalogue.h"
+#include "plan/characters.h"
 #include "plan/document.h"
 #include "plan/plan.h"
 #include "plan/quantity.h"

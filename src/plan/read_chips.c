@@ -115,7 +115,7 @@ static void report_unknown_part(struct reader *reader, const struct node *node)
 	for (size_t index = 0; index < reader->catalogue->part_count && count < COUNT_OF(names); index++)
 		names[count++] = reader->catalogue->parts[index].name;
 	diagnose(reader->diagnostics, RULE_UNKNOWN_PART, node->place, "there is no part \"%s\" in the catalogue or in the plan's parts",
-	         node->text);
+	         SHORT(node->text));
 	hint_words(reader, node->text, names, count);
 }
 
@@ -139,7 +139,8 @@ static const struct part *read_part(struct reader *reader, const struct node **v
 		if (fraction_compare(part->grades[index].access_s, *access_s) == 0)
 			return part;
 	diagnose(reader->diagnostics, RULE_SPEED_NOT_LISTED, values[CHIP_SPEED]->place,
-	         "speed %s is none of the listed grades of part %s, and is taken as given", values[CHIP_SPEED]->text, part->name);
+	         "speed %s is none of the listed grades of part %s, and is taken as given", SHORT(values[CHIP_SPEED]->text),
+	         SHORT(part->name));
 	return part;
 }
 
@@ -173,10 +174,10 @@ static void hint_larger_part(struct reader *reader, const struct part *small, un
 	const struct part *like = larger_part(reader, small, address_pins, true);
 	const struct part *other = larger_part(reader, small, address_pins, false);
 	if (like != NULL && other != NULL && other->address_pins < like->address_pins)
-		diagnose_hint(reader->diagnostics, "part %s with %u address pins would do, or %s with %u", like->name, like->address_pins,
-		              other->name, other->address_pins);
+		diagnose_hint(reader->diagnostics, "part %s with %u address pins would do, or %s with %u", SHORT(like->name), like->address_pins,
+		              SHORT(other->name), other->address_pins);
 	else if (like != NULL || other != NULL)
-		diagnose_hint(reader->diagnostics, "part %s with %u address pins would do", like != NULL ? like->name : other->name,
+		diagnose_hint(reader->diagnostics, "part %s with %u address pins would do", SHORT(like != NULL ? like->name : other->name),
 		              like != NULL ? like->address_pins : other->address_pins);
 	else
 		diagnose_hint(reader->diagnostics, "no part of that width is large enough: use fewer state bits, or add one under parts");
@@ -188,7 +189,7 @@ static bool check_part_size(struct reader *reader, const struct node *node, cons
 	if (part->address_pins >= bits)
 		return true;
 	diagnose(reader->diagnostics, RULE_PART_TOO_SMALL, node->place, "part %s has %u address pins, but the state has %u bits",
-	         part->name, part->address_pins, bits);
+	         SHORT(part->name), part->address_pins, bits);
 	hint_larger_part(reader, part, bits);
 	return false;
 }
@@ -228,7 +229,7 @@ static void read_short_chips(struct reader *reader, const struct node *node)
 	const size_t count = (bits + part->data_pins - 1) / part->data_pins;
 	if (count > LIMIT_CHIPS) {
 		diagnose(reader->diagnostics, RULE_TOO_MANY_CHIPS, node->place, "a word of %zu bits needs %zu chips of part %s, wanted at most %d",
-		         bits, count, part->name, LIMIT_CHIPS);
+		         bits, count, SHORT(part->name), LIMIT_CHIPS);
 		return;
 	}
 	plan->chips = reader_array(reader, count, sizeof *plan->chips);
@@ -254,12 +255,14 @@ static bool read_label(struct reader *reader, const struct node *node, struct ch
 		return false;
 	const size_t good = strspn(text, "ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz0123456789_-");
 	if (good != strlen(text) || good > 100) {
-		diagnose(reader->diagnostics, RULE_BAD_NAME, node->place, "label \"%s\": wanted 1 to 100 letters, digits, _ and -", text);
+		diagnose(reader->diagnostics, RULE_BAD_NAME, node->place, "label \"%s\": wanted 1 to 100 letters, digits, _ and -",
+		         SHORT(text));
 		return false;
 	}
 	for (size_t other = 0; other < index; other++)
 		if (reader->plan->chips[other].label != NULL && strcmp(reader->plan->chips[other].label, text) == 0) {
-			diagnose(reader->diagnostics, RULE_DOUBLED_NAME, node->place, "label \"%s\" is the label of an earlier chip", text);
+			diagnose(reader->diagnostics, RULE_DOUBLED_NAME, node->place, "label \"%s\" is the label of an earlier chip",
+			         SHORT(text));
 			diagnose_also(reader->diagnostics, reader->plan->chips[other].place, "the earlier chip");
 			return false;
 		}

@@ -17,7 +17,8 @@ static bool read_frequency(struct reader *reader, const struct node *node, const
 	if (!read_quantity(reader, node, what, 1u << DIMENSION_FREQUENCY, &quantity))
 		return false;
 	if (quantity.value.numerator <= 0) {
-		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: must be above zero, found \"%s\"", what, node->text);
+		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: must be above zero, found \"%s\"", what,
+		         SHORT(node->text));
 		return false;
 	}
 	*hertz = quantity.value;
@@ -36,12 +37,12 @@ static bool read_ticks(struct reader *reader, const struct node *node, const cha
 		value = fraction_whole(INT64_MAX);
 	if (!fraction_is_whole(value)) {
 		diagnose(reader->diagnostics, RULE_NOT_WHOLE_TICKS, node->place, "%s: wanted a whole number of ticks, found \"%s\"", what,
-		         node->text);
+		         SHORT(node->text));
 		return false;
 	}
 	if (value.numerator < 1 || value.numerator > LIMIT_CELL_TICKS) {
 		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: wanted 1 to %d ticks, found \"%s\"", what,
-		         LIMIT_CELL_TICKS, node->text);
+		         LIMIT_CELL_TICKS, SHORT(node->text));
 		return false;
 	}
 	*ticks = value.numerator;
@@ -72,7 +73,7 @@ static bool read_subcarrier(struct reader *reader, const struct node *node, stru
 	}
 	if (!good || !fraction_divide(reader->plan->clock.master_hz, divisor, &result)) {
 		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place,
-		         "subcarrier: wanted a frequency or \"master / N\" with N above zero, found \"%s\"", text);
+		         "subcarrier: wanted a frequency or \"master / N\" with N above zero, found \"%s\"", SHORT(text));
 		return false;
 	}
 	*hertz = result;
@@ -119,14 +120,14 @@ static void read_phase(struct reader *reader, const struct node *node, bool subc
 		return;
 	clock->phase_place = node->place;
 	if (!parse_phase(text, &clock->phase, &clock->phase_count)) {
-		diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "phase: \"%s\" is none of its choices", text);
+		diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "phase: \"%s\" is none of its choices", SHORT(text));
 		diagnose_hint(reader->diagnostics,
 		              "write every line, every N lines, every frame, every N frames (N from 1 to %d), or free", LIMIT_LINES);
 		return;
 	}
 	if (clock->phase != PHASE_FREE && !subcarrier_asked) {
 		diagnose(reader->diagnostics, RULE_PHASE_WITHOUT_SUBCARRIER, node->place,
-		         "phase \"%s\" is asked, but the clock has no subcarrier", text);
+		         "phase \"%s\" is asked, but the clock has no subcarrier", SHORT(text));
 		diagnose_hint(reader->diagnostics, "add subcarrier: master / N or a frequency, or leave phase out");
 	}
 }
@@ -138,7 +139,8 @@ static void read_accuracy(struct reader *reader, const struct node *node)
 	if (!read_quantity(reader, node, "accuracy", 1u << DIMENSION_PPM, &quantity))
 		return;
 	if (quantity.value.numerator < 0 || fraction_compare(quantity.value, fraction_whole(1000000)) >= 0) {
-		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "accuracy: wanted 0 to 1000000 ppm, found \"%s\"", node->text);
+		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "accuracy: wanted 0 to 1000000 ppm, found \"%s\"",
+		         SHORT(node->text));
 		return;
 	}
 	clock->has_accuracy = true;

@@ -26,7 +26,7 @@ static bool find_line(struct reader *reader, const struct node *node, size_t *li
 	const size_t count = plan->line_count < COUNT_OF(names) ? plan->line_count : COUNT_OF(names);
 	for (size_t index = 0; index < count; index++)
 		names[index] = plan->lines[index].name;
-	diagnose(reader->diagnostics, RULE_UNKNOWN_LINE, node->place, "there is no line type \"%s\"", name);
+	diagnose(reader->diagnostics, RULE_UNKNOWN_LINE, node->place, "there is no line type \"%s\"", SHORT(name));
 	hint_words(reader, name, names, count);
 	return false;
 }
@@ -64,7 +64,7 @@ static void notice_unused_lines(struct reader *reader)
 	for (size_t line = 0; line < plan->line_count; line++)
 		if (!used[line])
 			diagnose(reader->diagnostics, RULE_UNUSED_LINE, plan->lines[line].place, "line type \"%s\" is in no block of the frame",
-			         plan->lines[line].name);
+			         SHORT(plan->lines[line].name));
 }
 
 void read_frame(struct reader *reader, const struct node *node)

@@ -49,7 +49,7 @@ static void read_region_time(struct reader *reader, const struct node *node, str
 	const bool fits = fraction_multiply(quantity.value, unit, &ticks);
 	if (!fits || ticks.numerator <= 0 || fraction_floor(ticks) / clock->cell_ticks >= LIMIT_CELLS) {
 		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "time: wanted more than nothing and at most %d cells, found \"%s\"",
-		         LIMIT_CELLS, node->text);
+		         LIMIT_CELLS, SHORT(node->text));
 		return;
 	}
 	region->ticks = ticks;
@@ -100,12 +100,13 @@ static void read_assert(struct reader *reader, const struct node *node, struct r
 			const char *names[LIMIT_SIGNALS];
 			for (size_t other = 0; other < plan->signal_count; other++)
 				names[other] = plan->signals[other].name;
-			diagnose(reader->diagnostics, RULE_UNKNOWN_SIGNAL, node->items[index]->place, "there is no signal \"%s\"", name);
+			diagnose(reader->diagnostics, RULE_UNKNOWN_SIGNAL, node->items[index]->place, "there is no signal \"%s\"", SHORT(name));
 			hint_words(reader, name, names, plan->signal_count);
 			continue;
 		}
 		if ((region->assert_mask >> signal & 1) != 0)
-			diagnose(reader->diagnostics, RULE_DOUBLED_NAME, node->items[index]->place, "signal \"%s\" is listed twice", name);
+			diagnose(reader->diagnostics, RULE_DOUBLED_NAME, node->items[index]->place, "signal \"%s\" is listed twice",
+			         SHORT(name));
 		region->assert_mask |= (uint64_t)1 << signal;
 	}
 }
@@ -138,21 +139,20 @@ static void read_stretch(struct reader *reader, const struct node *node, struct 
 	}
 }
 
-#define REST_SHOWN 20
-
 static void report_expression(struct reader *reader, const struct node *node, enum expression_status status, size_t offset)
 {
+	const char *text = SHORT(node->text);
 	const char *rest = node->text + offset;
 	const char *words = expression_status_words(status);
 	if (status == EXPRESSION_MEMORY)
 		diagnose(reader->diagnostics, RULE_OUT_OF_MEMORY, node->place, "memory is out");
 	else if (*rest == '\0')
-		diagnose(reader->diagnostics, RULE_BAD_EXPRESSION, node->place, "expression \"%s\", at its end: %s", node->text, words);
+		diagnose(reader->diagnostics, RULE_BAD_EXPRESSION, node->place, "expression \"%s\", at its end: %s", text, words);
 	else if (offset == 0)
-		diagnose(reader->diagnostics, RULE_BAD_EXPRESSION, node->place, "expression \"%s\": %s", node->text, words);
+		diagnose(reader->diagnostics, RULE_BAD_EXPRESSION, node->place, "expression \"%s\": %s", text, words);
 	else
-		diagnose(reader->diagnostics, RULE_BAD_EXPRESSION, node->place, "expression \"%s\", at \"%.*s%s\": %s", node->text, REST_SHOWN,
-		         rest, strlen(rest) > REST_SHOWN ? "..." : "", words);
+		diagnose(reader->diagnostics, RULE_BAD_EXPRESSION, node->place, "expression \"%s\", at \"%s\": %s", text,
+		         SHORT(rest), words);
 }
 
 static bool read_hold(struct reader *reader, const struct node *field, const struct node *value, struct hold *hold)
@@ -173,7 +173,7 @@ static bool read_hold(struct reader *reader, const struct node *field, const str
 	const char *names[LIMIT_FIELDS];
 	for (size_t index = 0; index < plan->machine.field_count; index++)
 		names[index] = plan->machine.fields[index].name;
-	diagnose(reader->diagnostics, RULE_UNKNOWN_FIELD, field->place, "the machine has no field \"%s\"", field->text);
+	diagnose(reader->diagnostics, RULE_UNKNOWN_FIELD, field->place, "the machine has no field \"%s\"", SHORT(field->text));
 	hint_words(reader, field->text, names, plan->machine.field_count);
 	return false;
 }
@@ -273,7 +273,7 @@ static struct region *changed_region(struct reader *reader, const struct node *n
 			continue;
 		if (found != NULL) {
 			diagnose(reader->diagnostics, RULE_AMBIGUOUS_REGION, name->place, "region \"%s\" exists more than once in line type \"%s\"",
-			         name->text, line->name);
+			         SHORT(name->text), SHORT(line->name));
 			diagnose_also(reader->diagnostics, found->place, "the first");
 			diagnose_also(reader->diagnostics, region->place, "the second");
 			diagnose_hint(reader->diagnostics, "give the regions different names, or write the line type out");
@@ -287,8 +287,8 @@ static struct region *changed_region(struct reader *reader, const struct node *n
 	const size_t count = line->region_count < COUNT_OF(names) ? line->region_count : COUNT_OF(names);
 	for (size_t index = 0; index < count; index++)
 		names[index] = line->regions[index].name;
-	diagnose(reader->diagnostics, RULE_UNKNOWN_REGION, name->place, "line type \"%s\" has no region \"%s\" to change", line->name,
-	         name->text);
+	diagnose(reader->diagnostics, RULE_UNKNOWN_REGION, name->place, "line type \"%s\" has no region \"%s\" to change",
+	         SHORT(line->name), SHORT(name->text));
 	hint_words(reader, name->text, names, count);
 	return NULL;
 }
@@ -297,7 +297,7 @@ static struct region *changed_region(struct reader *reader, const struct node *n
 static bool is_first_change(struct reader *reader, const struct node *name, const struct node **change)
 {
 	if (*change != NULL) {
-		diagnose(reader->diagnostics, RULE_DOUBLED_NAME, name->place, "region \"%s\" is changed twice", name->text);
+		diagnose(reader->diagnostics, RULE_DOUBLED_NAME, name->place, "region \"%s\" is changed twice", SHORT(name->text));
 		diagnose_also(reader->diagnostics, (*change)->place, "the first change");
 		diagnose_hint(reader->diagnostics, "put all keys that change into one of them");
 		return false;
@@ -377,7 +377,7 @@ static void read_line_chain(struct reader *reader, struct pending_line *pending,
 		const struct line_type *lines = reader->plan->lines;
 		diagnose(reader->diagnostics, RULE_LIKE_LOOP, pending[last].values[LINE_LIKE]->place,
 		         last == index ? "line type \"%s\" derives from itself" : "line type \"%s\" derives from itself, by way of \"%s\"",
-		         lines[index].name, lines[last].name);
+		         SHORT(lines[index].name), SHORT(lines[last].name));
 		pending[last].good = false;
 	}
 	while (length > 0)
@@ -420,7 +420,7 @@ static void read_line_head(struct reader *reader, const struct node *node, struc
 	const size_t count = plan->line_count < COUNT_OF(names) ? plan->line_count : COUNT_OF(names);
 	for (size_t index = 0; index < count; index++)
 		names[index] = plan->lines[index].name;
-	diagnose(reader->diagnostics, RULE_UNKNOWN_LINE, values[LINE_LIKE]->place, "there is no line type \"%s\"", name);
+	diagnose(reader->diagnostics, RULE_UNKNOWN_LINE, values[LINE_LIKE]->place, "there is no line type \"%s\"", SHORT(name));
 	hint_words(reader, name, names, count);
 	pending->good = false;
 }

@@ -33,7 +33,7 @@ static void read_state_bits(struct reader *reader, const struct node *node)
 		return;
 	if (!fraction_is_whole(quantity.value) || quantity.value.numerator < 1 || quantity.value.numerator > LIMIT_STATE_BITS) {
 		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "state: wanted 1 to %d bits, found \"%s\"", LIMIT_STATE_BITS,
-		         node->text);
+		         SHORT(node->text));
 		return;
 	}
 	reader->plan->machine.line.state_bits = (unsigned)quantity.value.numerator;

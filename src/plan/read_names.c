@@ -4,7 +4,6 @@
 
 #include "base/excerpt.h"
 #include "base/text.h"
-#include "plan/characters.h"
 #include "plan/expression.h"
 
 #define NAME_CHARACTERS 40
@@ -32,8 +31,8 @@ bool check_identifier(struct reader *reader, const struct node *node, const char
 		good = (text[index] >= 'a' && text[index] <= 'z') || (text[index] >= '0' && text[index] <= '9') || text[index] == '_';
 	if (!good) {
 		diagnose(reader->diagnostics, RULE_BAD_NAME, node->place,
-		         "%s \"%s\": wanted a lower-case letter, then lower-case letters, digits and _, at most %d in all", what, text,
-		         IDENTIFIER_CHARACTERS);
+		         "%s \"%s\": wanted a lower-case letter, then lower-case letters, digits and _, at most %d in all", what,
+		         SHORT(text), IDENTIFIER_CHARACTERS);
 		return false;
 	}
 	if (is_reserved(text)) {
@@ -126,7 +125,7 @@ void hint_words(struct reader *reader, const char *word, const char *const *cand
 	struct text list = {0};
 	const size_t shown = count > 16 ? 16 : count;
 	for (size_t index = 0; index < shown; index++)
-		text_printf(&list, "%s%s", index == 0 ? "" : ", ", candidates[index]);
+		text_printf(&list, "%s%s", index == 0 ? "" : ", ", SHORT(candidates[index]));
 	if (shown < count)
 		text_printf(&list, " and %zu more", count - shown);
 	diagnose_hint(reader->diagnostics, "there %s: %s", count == 1 ? "is" : "are", text_string(&list));

@@ -43,7 +43,7 @@ static void read_version(struct reader *reader, const struct node *node)
 	if (!expect_kind(reader, node, NODE_SCALAR, "scanlatch"))
 		return;
 	diagnose(reader->diagnostics, RULE_LANGUAGE_VERSION, node->place, "scanlatch: wanted version 1 of the plan language, found \"%s\"",
-	         node->text);
+	         SHORT(node->text));
 }
 
 static void read_plan_name(struct reader *reader, const struct node *node)
@@ -54,7 +54,8 @@ static void read_plan_name(struct reader *reader, const struct node *node)
 	if (text[0] == '-' || node->length > PLAN_NAME_CHARACTERS ||
 	    strspn(text, "abcdefghijklmnopqrstuvwxyz0123456789-") != node->length) {
 		diagnose(reader->diagnostics, RULE_BAD_NAME, node->place,
-		         "name \"%s\": wanted 1 to %d lower-case letters, digits and -, not starting with -", text, PLAN_NAME_CHARACTERS);
+		         "name \"%s\": wanted 1 to %d lower-case letters, digits and -, not starting with -", SHORT(text),
+		         PLAN_NAME_CHARACTERS);
 		return;
 	}
 	reader->plan->name = text;
@@ -118,8 +119,8 @@ static void read_root(struct reader *reader, const struct node *root)
 		read_sweeps(reader, values[PLAN_SWEEP]);
 }
 
-// A path without its folders, printable as messages have it: a file's name may be any bytes, but JSON is UTF-8 (RFC 8259, section 8.1).
-// In the arena; NULL when memory is out.
+// A path without its folders, printable as messages have it: a file's name may be any bytes, but JSON is UTF-8 (RFC 8259,
+// section 8.1). In the arena; NULL when memory is out.
 static const char *base_name(struct arena *arena, const char *path)
 {
 	const char *slash = strrchr(path, '/');

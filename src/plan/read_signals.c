@@ -46,7 +46,8 @@ static void read_lead(struct reader *reader, const struct node *node, struct sig
 		return;
 	if (!fraction_is_whole(quantity.value) || llabs(quantity.value.numerator) > LIMIT_LEAD_CELLS) {
 		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place,
-		         "lead: wanted a whole number of cells from -%d to %d, found \"%s\"", LIMIT_LEAD_CELLS, LIMIT_LEAD_CELLS, node->text);
+		         "lead: wanted a whole number of cells from -%d to %d, found \"%s\"", LIMIT_LEAD_CELLS, LIMIT_LEAD_CELLS,
+		         SHORT(node->text));
 		return;
 	}
 	signal->lead_cells = quantity.value.numerator;
@@ -77,7 +78,7 @@ static void read_code_list(struct reader *reader, const struct node *node, struc
 			return;
 		if (!whole_number_parse(text, &value) || value > most) {
 			diagnose(reader->diagnostics, RULE_BAD_CODE, item->place, "code: wanted 0 to %lld, which field \"%s\" holds, found \"%s\"",
-			         (long long)most, field->name, text);
+			         (long long)most, SHORT(field->name), SHORT(text));
 			return;
 		}
 		codes[index] = (uint32_t)value;
@@ -105,7 +106,8 @@ static void read_field_origin(struct reader *reader, const struct node *node, st
 		const char *names[LIMIT_FIELDS];
 		for (size_t index = 0; index < reader->plan->machine.field_count; index++)
 			names[index] = reader->plan->machine.fields[index].name;
-		diagnose(reader->diagnostics, RULE_UNKNOWN_FIELD, values[FROM_KEY_FIELD]->place, "the machine has no field \"%s\"", name);
+		diagnose(reader->diagnostics, RULE_UNKNOWN_FIELD, values[FROM_KEY_FIELD]->place, "the machine has no field \"%s\"",
+		         SHORT(name));
 		hint_words(reader, name, names, reader->plan->machine.field_count);
 		signal->field = 0;
 		return;
@@ -129,7 +131,7 @@ static void read_origin(struct reader *reader, const struct node *node, struct s
 	}
 	if (expect_kind(reader, node, NODE_SCALAR, "from (data, or a mapping with field and codes)"))
 		diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "from: wanted data or { field: NAME, codes: [...] }, found \"%s\"",
-		         node->text);
+		         SHORT(node->text));
 }
 
 static void take_role(struct reader *reader, const struct node *node, size_t index, enum role role)
@@ -141,8 +143,8 @@ static void take_role(struct reader *reader, const struct node *node, size_t ind
 	if (plan->role_signal[role] >= 0) {
 		const struct signal *other = &plan->signals[plan->role_signal[role]];
 		diagnose(reader->diagnostics, RULE_DOUBLED_ROLE, node->place, "signal \"%s\" has role %s, which signal \"%s\" has already",
-		         plan->signals[index].name, role_words[role], other->name);
-		diagnose_also(reader->diagnostics, other->place, "signal \"%s\"", other->name);
+		         SHORT(plan->signals[index].name), role_words[role], SHORT(other->name));
+		diagnose_also(reader->diagnostics, other->place, "signal \"%s\"", SHORT(other->name));
 		return;
 	}
 	plan->role_signal[role] = (int)index;
@@ -173,7 +175,8 @@ static void check_stretch_signal(struct reader *reader)
 	if (index < 0 || !reader->clock_known || plan->clock.stretch_ticks > 0)
 		return;
 	diagnose(reader->diagnostics, RULE_STRETCH_WITHOUT_LENGTH, plan->signals[index].place,
-	         "signal \"%s\" has role stretch, but the clock does not say how long a stretch is", plan->signals[index].name);
+	         "signal \"%s\" has role stretch, but the clock does not say how long a stretch is",
+	         SHORT(plan->signals[index].name));
 	diagnose_hint(reader->diagnostics, "add stretch: N dots (or ticks) to clock");
 }
 

@@ -51,9 +51,11 @@ static void report_unknown_logic(struct reader *reader, const struct node *node,
 		if (catalogue->logic[index].kind == kind)
 			names[count++] = catalogue->logic[index].name;
 	if (named != NULL)
-		diagnose(reader->diagnostics, RULE_UNKNOWN_PART, node->place, "%s: \"%s\" is a %s", what, node->text, logic_words[named->kind]);
+		diagnose(reader->diagnostics, RULE_UNKNOWN_PART, node->place, "%s: \"%s\" is a %s", what, SHORT(node->text),
+		         logic_words[named->kind]);
 	else
-		diagnose(reader->diagnostics, RULE_UNKNOWN_PART, node->place, "%s: there is no %s \"%s\" in the catalogue", what, what, node->text);
+		diagnose(reader->diagnostics, RULE_UNKNOWN_PART, node->place, "%s: there is no %s \"%s\" in the catalogue", what, what,
+		         SHORT(node->text));
 	hint_words(reader, named != NULL ? "" : node->text, names, count);
 }
 
@@ -104,7 +106,8 @@ static void read_share(struct reader *reader, const struct node *node)
 	if (good)
 		reader->plan->timing.share = share;
 	else
-		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "share: wanted n/m, above 0 and at most 1/1, found \"%s\"", text);
+		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "share: wanted n/m, above 0 and at most 1/1, found \"%s\"",
+		         SHORT(text));
 }
 
 void read_timing(struct reader *reader, const struct node *node)
@@ -145,7 +148,8 @@ static bool read_sweep_bits(struct reader *reader, const struct node *node, stru
 	if (strcmp(name, "state") != 0) {
 		const size_t field = find_field(reader->plan, name);
 		if (field == SIZE_MAX) {
-			diagnose(reader->diagnostics, RULE_UNKNOWN_FIELD, node->place, "bits: the machine has no field \"%s\"", name);
+			diagnose(reader->diagnostics, RULE_UNKNOWN_FIELD, node->place, "bits: the machine has no field \"%s\"",
+			         SHORT(name));
 			diagnose_hint(reader->diagnostics, "write FIELD.hi..lo with a field of the machine, or state.hi..lo");
 			return false;
 		}

@@ -41,7 +41,7 @@ bool expect_values(struct reader *reader, const struct node *node, const char *w
 	if (expect_kind(reader, node, NODE_LIST, what))
 		return true;
 	if (node->kind == NODE_SCALAR && node->length > 0)
-		diagnose_hint(reader->diagnostics, "write [%s]", node->text);
+		diagnose_hint(reader->diagnostics, "write [%s]", SHORT(node->text));
 	return false;
 }
 
@@ -78,7 +78,7 @@ static void report_unknown_key(struct reader *reader, const struct node *key, co
 {
 	const char *names[KEYS_LIMIT];
 	const size_t name_count = key_names(keys, count, names);
-	diagnose(reader->diagnostics, RULE_UNKNOWN_KEY, key->place, "%s has no key \"%s\"", what, key->text);
+	diagnose(reader->diagnostics, RULE_UNKNOWN_KEY, key->place, "%s has no key \"%s\"", what, SHORT(key->text));
 	if (glued_key(key->text, names, name_count) != NULL)
 		diagnose_hint(reader->diagnostics, "put a space after ':'");
 	else
@@ -144,7 +144,7 @@ bool read_whole(struct reader *reader, const struct node *node, const char *what
 	int64_t value;
 	if (!whole_number_parse(text, &value)) {
 		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "%s: wanted a whole number from %lld to %lld, found \"%s\"",
-		         what, (long long)least, (long long)most, text);
+		         what, (long long)least, (long long)most, SHORT(text));
 		struct quantity quantity;
 		if (quantity_parse(text, &quantity) == QUANTITY_OK)
 			diagnose_hint(reader->diagnostics, "write the number without a unit");
@@ -152,7 +152,7 @@ bool read_whole(struct reader *reader, const struct node *node, const char *what
 	}
 	if (value < least || value > most) {
 		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "%s: wanted a whole number from %lld to %lld, found %s",
-		         what, (long long)least, (long long)most, text);
+		         what, (long long)least, (long long)most, SHORT(text));
 		return false;
 	}
 	*result = value;
@@ -166,7 +166,7 @@ bool read_truth(struct reader *reader, const struct node *node, const char *what
 		return false;
 	if (truth_parse(text, result))
 		return true;
-	diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "%s: wanted true or false, found \"%s\"", what, text);
+	diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "%s: wanted true or false, found \"%s\"", what, SHORT(text));
 	return false;
 }
 
@@ -204,7 +204,7 @@ bool read_choice(struct reader *reader, const struct node *node, const char *wha
 			return true;
 		}
 	}
-	diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "%s: \"%s\" is none of its choices", what, text);
+	diagnose(reader->diagnostics, RULE_BAD_CHOICE, node->place, "%s: \"%s\" is none of its choices", what, SHORT(text));
 	hint_choices(reader, text, words, count);
 	return false;
 }
@@ -246,9 +246,10 @@ bool read_quantity(struct reader *reader, const struct node *node, const char *w
 	}
 	if (status != QUANTITY_OK)
 		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: %s, found \"%s\"", what,
-		         quantity_status_words(status), text);
+		         quantity_status_words(status), SHORT(text));
 	else
-		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: \"%s\" has a unit that does not fit here", what, text);
+		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: \"%s\" has a unit that does not fit here", what,
+		         SHORT(text));
 	hint_quantity(reader, text, status, allowed);
 	return false;
 }
@@ -260,7 +261,7 @@ bool read_time(struct reader *reader, const struct node *node, const char *what,
 		return false;
 	if (quantity.value.numerator < 0 || (positive && quantity.value.numerator == 0)) {
 		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: must %s, found \"%s\"", what,
-		         positive ? "be above zero" : "not be negative", node->text);
+		         positive ? "be above zero" : "not be negative", SHORT(node->text));
 		return false;
 	}
 	*seconds = quantity.value;
@@ -287,7 +288,7 @@ bool read_bits(struct reader *reader, const struct node *node, const char *text,
 {
 	unsigned top, bottom;
 	if (!bit_range_parse(text, &top, &bottom)) {
-		diagnose(reader->diagnostics, RULE_BAD_BITS, node->place, "%s: wanted one bit or hi..lo, found \"%s\"", what, text);
+		diagnose(reader->diagnostics, RULE_BAD_BITS, node->place, "%s: wanted one bit or hi..lo, found \"%s\"", what, SHORT(text));
 		hint_reversed(reader, text);
 		return false;
 	}

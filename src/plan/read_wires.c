@@ -74,10 +74,10 @@ static void report_unknown_wire(struct reader *reader, const struct node *node, 
 	add_data_names(reader->plan, &data);
 	const struct wire_names *own = is_address ? &address : &data;
 	diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place, "%s%u: there is no wire \"%s\" to put on it", is_address ? "A" : "D",
-	         pin, node->text);
+	         pin, SHORT(node->text));
 	const char *near = nearest_word(node->text, own->names, own->count);
 	if (has_name(is_address ? &data : &address, node->text))
-		diagnose_hint(reader->diagnostics, "\"%s\" is for %s pins", node->text, is_address ? "data" : "address");
+		diagnose_hint(reader->diagnostics, "\"%s\" is for %s pins", SHORT(node->text), is_address ? "data" : "address");
 	else if (near != NULL)
 		diagnose_hint(reader->diagnostics, "did you mean \"%s\"?", near);
 	else
@@ -88,7 +88,7 @@ static void report_beyond(struct reader *reader, const struct node *node, const 
                           unsigned bits)
 {
 	diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place, "%s%u: there is no \"%s\": the highest is %s.%u", pin, index,
-	         node->text, word, bits - 1);
+	         SHORT(node->text), word, bits - 1);
 }
 
 static bool parse_address_wire(struct reader *reader, const struct node *node, unsigned pin, struct address_wire *wire)
@@ -108,7 +108,8 @@ static bool parse_address_wire(struct reader *reader, const struct node *node, u
 	else if (parse_numbered(text, "bank", &number) && number < LIMIT_BANK_BITS)
 		*wire = (struct address_wire){ADDRESS_BANK, number};
 	else if (parse_numbered(text, "kind", &number)) {
-		diagnose(reader->diagnostics, RULE_NOT_YET, node->place, "A%u: \"%s\" belongs to line-frame machines, which this version does not carry out yet", pin, text);
+		diagnose(reader->diagnostics, RULE_NOT_YET, node->place,
+		         "A%u: \"%s\" belongs to line-frame machines, which this version does not carry out yet", pin, SHORT(text));
 		return false;
 	} else if (parse_numbered(text, "state", &number)) {
 		report_beyond(reader, node, "A", pin, "state", reader->plan->machine.line.state_bits);
@@ -141,10 +142,12 @@ static bool parse_data_wire(struct reader *reader, const struct node *node, unsi
 	else if (!counted && parse_numbered(text, "next", &number) && number < plan->machine.line.state_bits)
 		*wire = (struct data_wire){DATA_NEXT, number};
 	else if (strcmp(text, "step") == 0 || parse_numbered(text, "kind", &number)) {
-		diagnose(reader->diagnostics, RULE_NOT_YET, node->place, "D%u: \"%s\" belongs to line-frame machines, which this version does not carry out yet", pin, text);
+		diagnose(reader->diagnostics, RULE_NOT_YET, node->place,
+		         "D%u: \"%s\" belongs to line-frame machines, which this version does not carry out yet", pin, SHORT(text));
 		return false;
 	} else if (signal != SIZE_MAX) {
-		diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place, "D%u: signal \"%s\" comes from a field of the state and has no bit in the word", pin, text);
+		diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place,
+		         "D%u: signal \"%s\" comes from a field of the state and has no bit in the word", pin, SHORT(text));
 		return false;
 	} else if (!counted && parse_numbered(text, "next", &number)) {
 		report_beyond(reader, node, "D", pin, "next", plan->machine.line.state_bits);
@@ -161,12 +164,14 @@ static bool check_pin_count(struct reader *reader, const struct node *node, cons
 {
 	if (node->count > pins) {
 		diagnose(reader->diagnostics, RULE_WIRE_OFF_PART, node->items[pins]->place,
-		         "part %s has no pin %s%u: it ends at %s%u, but %zu pins are listed", part->name, pin, pins, pin, pins - 1, node->count);
+		         "part %s has no pin %s%u: it ends at %s%u, but %zu pins are listed", SHORT(part->name), pin, pins, pin,
+		         pins - 1, node->count);
 		return false;
 	}
 	if (node->count < pins)
 		diagnose(reader->diagnostics, RULE_PIN_NOT_LISTED, node->place,
-		         "part %s has pins up to %s%u, but %zu are listed: the others are taken as open", part->name, pin, pins - 1, node->count);
+		         "part %s has pins up to %s%u, but %zu are listed: the others are taken as open", SHORT(part->name), pin, pins - 1,
+		         node->count);
 	return true;
 }
 
@@ -208,7 +213,7 @@ static void report_doubled_address(struct reader *reader, const struct node *nod
 {
 	struct missing missing = {.count = 0};
 	diagnose(reader->diagnostics, RULE_WIRE_DOUBLED, node->items[pin]->place, "A%u: \"%s\" is on A%u of this chip already", pin,
-	         node->items[pin]->text, first);
+	         SHORT(node->items[pin]->text), first);
 	for (unsigned bit = 0; all_known && bit < reader->plan->machine.line.state_bits; bit++)
 		if (address_pin_of(chip, (struct address_wire){ADDRESS_STATE, bit}) == LIMIT_ADDRESS_PINS)
 			add_missing(&missing, "state", bit);
@@ -316,7 +321,7 @@ void check_data_doubled(struct reader *reader, const struct node *chips, bool al
 			const struct node *node = list_of(chips, chip, "data")->items[pin];
 			const char *label = plan->chips[first.chip].label;
 			diagnose(reader->diagnostics, RULE_WIRE_DOUBLED, node->place, "D%u: \"%s\" is on D%u of chip \"%s\" already", pin,
-			         node->text, first.pin, label != NULL ? label : "");
+			         SHORT(node->text), first.pin, label != NULL ? label : "");
 			if (all_known)
 				hint_missing_data(reader);
 		}

@@ -116,8 +116,8 @@ static void report_states_short(const struct reporter *reporter, const struct fa
 		return;
 	}
 	diagnose(reporter->diagnostics, RULE_STATES_SHORT, hold_place(reporter, fault->cell),
-	         "%s: %u states needed for this cell and those that compete with it under %s, %u available",
-	         cell_words(reporter, fault->cell), fault->needed, limits_words(reporter, fault->cell), fault->available);
+	         "%s: %u states needed for this cell and those that compete with it, %u available under %s",
+	         cell_words(reporter, fault->cell), fault->needed, fault->available, limits_words(reporter, fault->cell));
 }
 
 static void report_state_shared(const struct reporter *reporter, const struct fault *fault)

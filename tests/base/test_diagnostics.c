@@ -121,24 +121,31 @@ static void counts_tell_errors_from_notices(void **state)
 	diagnostics_destroy(NULL);
 }
 
-// A message of 400 two-byte characters is cut after 200 of them; the 1,001st diagnostic and later ones are counted.
+// A message of 601 two-byte characters is cut after 600 of them, one of bytes that begin none after 2,400; the 1,001st diagnostic and later ones are counted.
 static void what_nobody_reads_is_cut(void **state)
 {
 	(void)state;
 	struct source source = source_of("a", "b\n");
 	struct diagnostics *diagnostics = diagnostics_create();
-	char message[801] = "";
-	for (size_t index = 0; index < 400; index++)
-		memcpy(message + 2 * index, "\xC3\xA4", 3);
-	diagnose(diagnostics, RULE_YAML_SYNTAX, at(&source, 0, 0), "%s", message);
-	message[400] = '\0';
-	struct text wanted = {0}, found = {0};
-	text_printf(&wanted, "a: error: %s ... [yaml-syntax]\n", message);
+	struct text message = {0}, wanted = {0}, found = {0};
+	for (size_t index = 0; index < 601; index++)
+		text_put(&message, "\xC3\xA4");
+	diagnose(diagnostics, RULE_YAML_SYNTAX, at(&source, 0, 0), "%s", text_string(&message));
+	diagnose(diagnostics, RULE_YAML_SYNTAX, at(&source, 0, 0), "%s", text_string(&message) + 2);
+	text_printf(&wanted, "a: error: %.1200s ... [yaml-syntax]\n", text_string(&message));
+	text_printf(&wanted, "a: error: %.1200s [yaml-syntax]\n", text_string(&message));
+	text_release(&message);
+	text_put_repeated(&message, '\x80', 2401);
+	diagnose(diagnostics, RULE_YAML_SYNTAX, at(&source, 0, 0), "%s", text_string(&message));
+	text_put(&wanted, "a: error: ");
+	text_put_repeated(&wanted, '?', 2400);
+	text_put(&wanted, " ... [yaml-syntax]\n");
 	diagnostics_print(diagnostics, &found, false);
 	assert_string_equal(text_string(&found), text_string(&wanted));
+	text_release(&message);
 	text_release(&wanted);
 	text_release(&found);
-	for (size_t index = 1; index < 1003; index++) {
+	for (size_t index = 3; index < 1003; index++) {
 		diagnose(diagnostics, RULE_YAML_SYNTAX, at(&source, 0, 0), "again");
 		assert_int_equal(diagnostics_take_hint(diagnostics), index < 1000);
 	}

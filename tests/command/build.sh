@@ -5,7 +5,7 @@ set -u
 
 work=$(mktemp -d) || exit 1
 trap 'chmod -R u+w "$work"; rm -rf "$work"' EXIT
-cp tests/good/{rounding,lead,scrambled,speed-notice,flicker}.yaml plans/tide-board-60.yaml "$work"
+cp tests/good/{rounding,lead,scrambled,pins,speed-notice,flicker}.yaml plans/tide-board-60.yaml "$work"
 cp tests/bad/states-short.yaml "$work/short.yaml"
 sed 's/phase: every line/phase: every 2 lines/; s/stretch: auto, //' tests/good/stretch-auto.yaml |
 	sed 's/^name: .*/name: out-of-step/; s/cells: 2, hold/cells: 3, hold/' >"$work/out-of-step.yaml"
@@ -65,6 +65,19 @@ same 'listing' '"only" 0 0 "sync" 0  1 110  0:ED
 "only" 0 3 "end" 3  0 000  3:E0' "$(grep -v '^#' listing/lead.lst)"
 build 0 tide-board-60.yaml --listing -o listing
 same 'listing of a large plan: a row a cell' 26462 "$(grep -c '^"' listing/tide-board-60.lst)"
+
+# Addresses are those that the wires make: state.0 on A0, state.1 on A2, A3 high, A1 low, A4 open.
+build 0 pins.yaml --listing -o listing
+same 'listing: pins tied to levels' '"only" 0 0 "sync" 0  1 1  08:FD
+"only" 0 1 "rest" 1  2 1  09:FE
+"only" 0 2 "rest" 2  3 1  0C:FF
+"only" 0 3 "rest" 3  0 0  0D:F8' "$(grep -v '^#' listing/pins.lst)"
+# U1 has state.1 on A0 and state.0 on A1, U2 the other way round.
+build 0 scrambled.yaml --listing -o listing
+same 'listing: two chips, wires in another order each' '"only" 0 0 "sync" 0  1 1  0:7F  0:FF
+"only" 0 1 "rest" 1  2 1  2:FF  1:FE
+"only" 0 2 "rest" 2  3 1  1:FF  2:FF
+"only" 0 3 "rest" 3  0 0  3:77  3:FE' "$(grep -v '^#' listing/scrambled.lst)"
 
 # Folders are made; the same bytes are kept.
 build 0 lead.yaml -o deep/er/folder/
@@ -129,6 +142,29 @@ for plan in speed-notice flicker; do
 	build 1 $plan.yaml -o strict-$plan --strict --unproven
 	holds "$plan --strict --unproven: written" test -s strict-$plan/$plan.rom0.bin
 done
+
+# in_json: what the JSON in stdout says of each plan: its name, whether it failed and was written, and its files.
+in_json() {
+	python3 -c '
+import json, sys
+plans = json.load(sys.stdin)
+for plan in plans if isinstance(plans, list) else [plans]:
+    print(plan["name"], plan["failed"], plan["written"], [file["name"] for file in plan["files"]])' <stdout
+}
+build 1 --json out-of-step.yaml -o json
+same 'JSON of a must that failed' 'out-of-step True False []' "$(in_json)"
+build 1 --json --strict flicker.yaml -o json
+same 'JSON of advice missed, --strict' 'flicker True False []' "$(in_json)"
+build 1 --json rounding.yaml out-of-step.yaml -o json
+same 'JSON of two plans, one failed' $'rounding False False []\nout-of-step True False []' "$(in_json)"
+build 3 --json lead.yaml -o /dev/null/json
+same 'JSON of a refused write' 'lead False False []' "$(in_json)"
+holds 'JSON of a refused write: says why' grep -q '^scanlatch: cannot make directory /dev/null.*; nothing was written$' stderr
+build 3 --json --unproven lead.yaml out-of-step.yaml -o /dev/null/json
+same 'JSON of a refused write, --unproven' $'lead False False []\nout-of-step True False []' "$(in_json)"
+holds 'JSON of what was not written: no folder' test ! -e json
+build 1 --json --unproven out-of-step.yaml --format bin -o json
+same 'JSON of --unproven' "out-of-step True True ['out-of-step.rom0.bin', 'out-of-step.manifest.json']" "$(in_json)"
 
 # refused NAME FOLDER ARGUMENT …: exit 3, says that nothing was written, and leaves the folder as it was.
 refused() {

@@ -5,6 +5,8 @@
 #include <stdint.h>
 #include <cmocka.h>
 
+#include <stdio.h>
+
 #include "by_hand.h"
 
 static struct proofs *find(const struct by_hand *hand)
@@ -130,6 +132,97 @@ static void decoded_signals(void **test)
 	by_hand_destroy(hand);
 }
 
+// Six cells of eight states, 4 and 7 spare; "mark" in the cells 0, 3 and 4. No pin and no hold says more of where cells are.
+#define SIX_CELLS 6u
+static const uint32_t six_states[SIX_CELLS] = {3, 5, 0, 6, 1, 2};
+
+static uint64_t six_mark(uint32_t cell)
+{
+	return cell % SIX_CELLS == 0 || cell % SIX_CELLS == 3 || cell % SIX_CELLS == 4;
+}
+
+static struct by_hand *six_burned(void)
+{
+	struct by_hand *hand = by_hand_create(3);
+	const uint64_t mark = add_signal(hand, "mark", true);
+	const size_t first = add_line(hand, "first", 3, (uint64_t[]){mark, 0, 0});
+	const size_t second = add_line(hand, "second", 3, (uint64_t[]){mark, mark, 0});
+	set_frame(hand, 2, (size_t[]){first, second});
+	add_straight_chips(hand);
+	for (uint32_t state = 0; state < 8; state++)
+		burn(hand, state, six_states[0], mark);
+	for (uint32_t cell = 0; cell < SIX_CELLS; cell++)
+		burn(hand, six_states[cell], six_states[(cell + 1) % SIX_CELLS], six_mark(cell + 1));
+	return hand;
+}
+
+// The spare row 7 leads to itself: the frame closes all the same, but power-up may be caught there.
+static void spare_row_that_leads_to_itself(void **test)
+{
+	(void)test;
+	struct by_hand *hand = six_burned();
+	assert_found(hand, 3);
+	burn(hand, 7, 7, 1);
+	struct proofs *proofs = find(hand);
+	assert_int_equal(proofs->closure.start_state, 3);
+	assert_verdict(proofs, PROOF_CLOSURE, VERDICT_PASS);
+	assert_verdict(proofs, PROOF_SIGNALS, VERDICT_PASS);
+	assert_verdict(proofs, PROOF_POWER_UP, VERDICT_FAIL);
+	assert_int_equal(proofs->power_up.lost_states, 1);
+	assert_int_equal(proofs->power_up.second_loop_state, 7);
+	assert_int_equal(proofs->power_up.second_loop_cells, 1);
+	assert_int_equal(proofs->proof[PROOF_POWER_UP].counterexample.byte.address, 7);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
+// Closure, from state 3 on, blames a row, in words that begin so.
+static void assert_blamed(const struct by_hand *hand, uint32_t cell, const char *words)
+{
+	struct proofs *proofs = find(hand);
+	const struct counterexample *found = &proofs->proof[PROOF_CLOSURE].counterexample;
+	assert_int_equal(proofs->closure.start_state, six_states[0]);
+	assert_verdict(proofs, PROOF_CLOSURE, VERDICT_FAIL);
+	assert_int_equal(found->cell, cell);
+	assert_int_equal(found->state, six_states[cell]);
+	assert_true(found->byte_known);
+	assert_int_equal(found->byte.address, six_states[cell]);
+	assert_int_equal(strncmp(found->what, words, strlen(words)), 0);
+	proofs_destroy(proofs);
+}
+
+// A row of the frame leads elsewhere, so that the loop is shorter, or none of the frame's. The start is what most states lead to: the
+// two spare ones and that of cell 5. The state that is left out leads on and nothing leads there: it is what was expected.
+static void rows_that_shorten_the_loop(void **test)
+{
+	(void)test;
+	for (uint32_t cell = 0; cell < 4; cell++) {
+		const uint32_t right = six_states[cell + 1];
+		for (uint32_t wrong = 0; wrong < 8; wrong++) {
+			char words[80];
+			if (wrong == right)
+				continue;
+			struct by_hand *hand = six_burned();
+			burn(hand, six_states[cell], wrong, six_mark(cell + 1));
+			snprintf(words, sizeof words, "the next state is 0x%X, expected 0x%X, which nothing else leads to", wrong, right);
+			assert_blamed(hand, cell, words);
+			by_hand_destroy(hand);
+		}
+	}
+}
+
+// What cell 4 leaves out leads home itself, as spare states do: there is no telling which of them was expected.
+static void row_before_the_last(void **test)
+{
+	(void)test;
+	struct by_hand *hand = six_burned();
+	burn(hand, 1, 3, 0);
+	assert_blamed(hand, 4, "the next state is 0x3 (rom0 0x0001: 0xF3), the frame's first: it came back after 5 cells, expected after 6");
+	burn(hand, 1, 5, 0);
+	assert_blamed(hand, 4, "the next state is 0x5 (rom0 0x0001: 0xF5), which cell 1 of the frame had already");
+	by_hand_destroy(hand);
+}
+
 // Loops of random pins with random holds: turned by any amount, the frame is found and proved.
 static void random_loops(void **test)
 {
@@ -179,6 +272,9 @@ int main(void)
 		cmocka_unit_test(longest_agreement),
 		cmocka_unit_test(loops_of_other_lengths),
 		cmocka_unit_test(decoded_signals),
+		cmocka_unit_test(spare_row_that_leads_to_itself),
+		cmocka_unit_test(rows_that_shorten_the_loop),
+		cmocka_unit_test(row_before_the_last),
 		cmocka_unit_test(random_loops),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);

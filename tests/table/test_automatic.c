@@ -270,8 +270,8 @@ static void test_half_too_small(void **state)
 	bench_hold(bench, first, 0, 0);
 	assert_null(bench_table(bench));
 	assert_printed(bench, "board.yaml:111:1: error: line 0 (\"quay\"), cell 32, region \"b\": 40 states needed for "
-	                      "this cell and those that compete with it under the hold of \"first\" and "
-	                      "the codes of \"select\", 32 available [states-short]\n");
+	                      "this cell and those that compete with it, 32 available under the hold of "
+	                      "\"first\" and the codes of \"select\" [states-short]\n");
 	bench_destroy(bench);
 }
 

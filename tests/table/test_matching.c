@@ -46,7 +46,7 @@ static void test_chain_short(void **state)
 	// Cell 1 got 1, cell 2 got 3, and nobody can move.
 	assert_printed(
 		bench, "board.yaml:121:1: error: line 0 (\"quay\"), cell 3, region \"b\": 4 states needed for this cell and "
-			   "those that compete with it under the hold of \"low\", 3 available [states-short]\n");
+			   "those that compete with it, 3 available under the hold of \"low\" [states-short]\n");
 	bench_destroy(bench);
 }
 
@@ -62,7 +62,7 @@ static void test_hold_short(void **state)
 	assert_null(bench_table(bench));
 	assert_printed(bench,
 	               "board.yaml:101:1: error: line 0 (\"quay\"), cell 2, region \"picture\": 3 states needed for this "
-	               "cell and those that compete with it under the hold of \"high\", 2 available [states-short]\n");
+	               "cell and those that compete with it, 2 available under the hold of \"high\" [states-short]\n");
 	bench_destroy(bench);
 }
 
@@ -77,7 +77,7 @@ static void test_codes_leave_too_few(void **state)
 	assert_null(bench_table(bench));
 	assert_printed(bench,
 	               "board.yaml:100:1: error: line 0 (\"quay\"), cell 0, region \"porch\": 3 states needed for this "
-	               "cell and those that compete with it under the codes of \"top\", 2 available [states-short]\n");
+	               "cell and those that compete with it, 2 available under the codes of \"top\" [states-short]\n");
 	bench_destroy(bench);
 }
 
