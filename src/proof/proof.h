@@ -44,7 +44,8 @@ struct counterexample {
 	bool present;
 	uint32_t bank;
 	uint32_t cell;         // index in the frame; power-up has none
-	uint32_t state;        // the state whose row was read when the fault came about (of a second loop: one of its states); NO_STATE if no row is at fault here
+	uint32_t state;        // the state whose row was read when the fault came about (of a second loop: one of its states);
+	                       // NO_STATE if no row is at fault here
 	size_t signal;         // of a pin fault; SIZE_MAX if none
 	bool byte_known;
 	struct byte_place byte;
