@@ -28,6 +28,7 @@ struct write_failure {
 	const char *step;
 	const char *path;
 	int error;
+	bool begun; // files before it may be new already: a rename failed, or the flush of the directory after them
 };
 
 // Writes `count` files into `directory` (made, with its parents, if it is not there): each to a temporary file beside its

@@ -235,15 +235,20 @@ static bool rename_all(const struct writing *writing, const struct output_file *
 		struct pending *pending = &writing->pending[index];
 		if (!pending->made)
 			continue;
-		if (renameat(writing->descriptor, pending->temporary, writing->descriptor, files[index].name) != 0)
-			return report_file(writing, failure, "rename", files[index].name);
+		if (renameat(writing->descriptor, pending->temporary, writing->descriptor, files[index].name) != 0) {
+			report_file(writing, failure, "rename", files[index].name);
+			failure->begun = true;
+			return false;
+		}
 		pending->made = false;
 		renamed = true;
 	}
 	// Some file systems cannot flush a directory, and say so with EINVAL; the renames are as safe there as they get.
-	if (renamed && !flush(writing->descriptor) && errno != EINVAL)
-		return report(failure, "flush", writing->directory);
-	return true;
+	if (!renamed || flush(writing->descriptor) || errno == EINVAL)
+		return true;
+	report(failure, "flush", writing->directory);
+	failure->begun = true;
+	return false;
 }
 
 static bool write_set(const struct writing *writing, const struct output_file *files, size_t count,

@@ -200,11 +200,9 @@ static bool any_failed(const struct build *build)
 
 static void report_write_failure(const struct write_failure *failure)
 {
-	// Renames come last: when one fails, those before it have been done.
-	const bool begun = strcmp(failure->step, "rename") == 0;
 	fflush(stdout);
 	fprintf(stderr, "scanlatch: cannot %s %s: %s; %s\n", failure->step, failure->path, strerror(failure->error),
-	        begun ? "files before it may be new already" : "nothing was written");
+	        failure->begun ? "files before it may be new already" : "nothing was written");
 }
 
 // What the files came to, last, so that it is what a reader sees first. What the system refused is said by report_write_failure.

@@ -65,6 +65,8 @@ static int report_proofs(const scanlatch_images *images, const struct common_opt
 
 static int prove(const char *path, char **arguments, int count, const struct common_options *options, scanlatch_messages *messages)
 {
+	struct progress progress = PROGRESS_NONE;
+	progress_begin(&progress, "reading");
 	scanlatch_plan *plan = scanlatch_plan_read_file(path, messages);
 	scanlatch_images *images = plan != NULL ? scanlatch_images_create(plan) : NULL;
 	int code = EXIT_GOOD;
@@ -74,6 +76,7 @@ static int prove(const char *path, char **arguments, int count, const struct com
 		scanlatch_images_read_folder(images, arguments[0], messages);
 	else if (images != NULL)
 		read_files(images, arguments, count, messages);
+	progress_end(&progress);
 	code = worse(code, print_messages(messages, options->colour));
 	if (code == EXIT_GOOD)
 		code = report_proofs(images, options);

@@ -45,8 +45,8 @@ struct counterexample {
 	uint32_t bank;
 	uint32_t cell;         // index in the frame; power-up has none
 	enum stage stage;      // whose row was read when the fault came about
-	uint32_t state;        // the address of that row: the stage's state (of a second loop: one of its states), and above it the kind where the
-	                       // stage sees one; NO_STATE if no row is at fault here
+	uint32_t state;        // the address of that row: the stage's state (of a second loop: one of its states), and above it the kind
+	                       // where the stage sees one; NO_STATE if no row is at fault here
 	size_t signal;         // of a pin fault; SIZE_MAX if none
 	bool byte_known;
 	struct byte_place byte;

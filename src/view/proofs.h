@@ -49,8 +49,8 @@ void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind k
 //                 "edges", PLACE of the cell that the first of them begins, "from_state", "to_state", "from_code",
 //                 "between_code", "to_code" } ], if decoded time settle (_s, _ns) from an edge until decoded pins have their
 //                 level (clear_unsettled later where an async clear strikes), "direct": data outputs are direct, and if so
-//                 time unsettled (_s, _ns) and "unsettled_chip": its label, "async_clear": clear goes straight into an asynchronous pin, and if so time
-//                 clear_unsettled (_s, _ns) and "clear_chip": its label }
+//                 time unsettled (_s, _ns) and "unsettled_chip": its label, "async_clear": clear goes straight into an
+//                 asynchronous pin, and if so time clear_unsettled (_s, _ns) and "clear_chip": its label }
 //   "speed":    { times cell, available, delay, access, setup, margin, needed, slack (_s, _ns), "second_pass": delay and
 //                 access count twice, "slowest_chip": its label }
 //   "sweep":    { "sweeps": [ { "bits": as the plan has them, "kept": true or false, "values", "missing", and if some are

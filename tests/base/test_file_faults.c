@@ -163,6 +163,8 @@ static void assert_nothing_is_half_written(const char *directory, bool done, con
 	}
 	assert_int_equal(failure->error, EIO);
 	bool after_renaming = strcmp(failure->step, "flush") == 0 && strcmp(failure->path, directory) == 0;
+	if (!done)
+		assert_int_equal(failure->begun, strcmp(failure->step, "rename") == 0 || after_renaming);
 	if (strcmp(failure->step, "rename") != 0 && !after_renaming)
 		assert_true(file_holds_text(directory, "a", "old a") && file_holds_text(directory, "c", "old c"));
 	if (after_renaming)
@@ -253,6 +255,7 @@ static void a_directory_that_is_not_flushed_is_a_failure(void **state)
 	no_faults();
 	assert_false(done);
 	assert_string_equal(failure.step, "flush");
+	assert_true(failure.begun);
 	assert_string_equal(failure.path, scratch);
 	assert_int_equal(failure.error, EIO);
 	assert_nothing_is_half_written(scratch, done, &failure);
