@@ -8,7 +8,7 @@
 # Its name is that of the rule it breaks, -something may follow; or several-something, when it breaks several.
 #
 # A case NAME of tests/good is `scanlatch build NAME.yaml -o out/NAME`, run in a copy of the folder, and at least one of
-#     NAME.stdout    what it prints on standard output, exactly
+#     NAME.stdout    what it prints on standard output, exactly but for the manifest's size, which reads N
 #     NAME.check     what `scanlatch check NAME.yaml` prints there, exactly
 #     NAME.expected  what else must be, line by line (# starts a comment, but not in a stdout line):
 #         args WORD …            further arguments
@@ -47,6 +47,7 @@ run_program() {
 	(cd "$1" && shift && timeout -k 5 120 "$SCANLATCH" "$@" >"$work/stdout" 2>"$work/stderr" </dev/null) 2>/dev/null
 	status=$?
 	sed -i "s|$work|WORK|g" "$work/stdout" "$work/stderr"
+	sed -Ei 's/(\.manifest\.json) \([0-9]+ bytes\)$/\1 (N bytes)/' "$work/stdout"
 	return "$status"
 }
 

@@ -172,7 +172,7 @@ static struct fraction unsettled(const struct trial *trial, struct fraction answ
 
 static void measure_direct(const struct trial *trial, struct glitch_result *result)
 {
-	const struct chip *chip = &trial->wiring.chips[slowest_chip(&trial->wiring)];
+	const struct chip *chip = &trial->wiring.chips[slowest_chip(&trial->wiring, STAGE_LINE)];
 	result->direct = true;
 	result->unsettled_part = chip->label;
 	result->unsettled_s = unsettled(trial, chip->access_s);

@@ -125,14 +125,26 @@ struct glitch_result {
 	const char *clear_part;      // label of the slowest chip that carries clear
 };
 
+#define SPEED_PASSES 4
+
+// A look-up on the way that must finish in time: what holds the address settles, then the chip answers.
+struct speed_pass {
+	bool has_delay;                // false where the address is another chip's answer
+	bool counter;                  // a counter holds the address, else a latch
+	struct fraction delay_s;
+	struct fraction access_s;
+	size_t chip;                   // the slowest of the stage
+};
+
 struct speed_result {
-	struct fraction cell_s;        // shortest cell
-	struct fraction available_s;   // share × cell
-	struct fraction delay_s, access_s, setup_s, margin_s;
-	bool second_pass;              // async clear: delay and access are paid twice
+	bool of_line;                  // the way is the frame stage's own, which has the shortest line for it
+	struct fraction cell_s;        // shortest cell, or line
+	struct fraction available_s;   // share of that
+	struct speed_pass passes[SPEED_PASSES]; // an async clear and a direct frame stage before the line stage take more than one
+	unsigned pass_count;
+	struct fraction setup_s, margin_s;
 	struct fraction needed_s;
 	struct fraction slack_s;       // available - needed; negative fails
-	size_t slowest_chip;
 };
 
 struct sweep_result {

@@ -47,7 +47,8 @@ static void zero_figures(struct proofs *proofs)
 	proofs->power_up.longest_lines = zero;
 	proofs->upset.mean_cells = proofs->upset.worst_slip_lines = proofs->upset.mean_slip_cells = zero;
 	proofs->glitches.settle_s = proofs->glitches.unsettled_s = proofs->glitches.clear_unsettled_s = zero;
-	proofs->speed = (struct speed_result){zero, zero, zero, zero, zero, zero, false, zero, zero, 0};
+	proofs->speed = (struct speed_result){.cell_s = zero, .available_s = zero, .setup_s = zero, .margin_s = zero, .needed_s = zero,
+	                                      .slack_s = zero};
 	for (unsigned kind = 0; kind < PROOF_COUNT; kind++)
 		proofs->proof[kind].counterexample.signal = SIZE_MAX;
 }

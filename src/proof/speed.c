@@ -2,11 +2,12 @@
 #include "base/arena.h"
 #include "proof/trial.h"
 
-size_t slowest_chip(const struct wiring *wiring)
+size_t slowest_chip(const struct wiring *wiring, enum stage stage)
 {
-	size_t slowest = 0;
-	for (size_t chip = 1; chip < wiring->chip_count; chip++)
-		if (fraction_compare(wiring->chips[chip].access_s, wiring->chips[slowest].access_s) > 0)
+	size_t slowest = SIZE_MAX;
+	for (size_t chip = 0; chip < wiring->chip_count; chip++)
+		if (wiring->chips[chip].stage == stage &&
+		    (slowest == SIZE_MAX || fraction_compare(wiring->chips[chip].access_s, wiring->chips[slowest].access_s) > 0))
 			slowest = chip;
 	return slowest;
 }
@@ -17,50 +18,113 @@ static struct fraction larger(struct fraction left, struct fraction right)
 }
 
 // What must be stable before the next edge: the latch's inputs, the counter's clear, or both.
-static struct fraction setup_of(const struct wiring *wiring, const struct timing *timing)
+static struct fraction setup_of(const struct trial *trial, enum stage stage)
 {
-	if (wiring->line.advance == ADVANCE_TABLE)
+	const struct timing *timing = &trial->timeline->plan->timing;
+	const struct stage_wiring *wired = wiring_stage(&trial->wiring, stage);
+	if (wired->advance == ADVANCE_TABLE)
 		return timing->latch_setup_s;
-	if (wiring->line.outputs == OUTPUTS_REGISTERED)
-		return larger(timing->counter_setup_s[STAGE_LINE], timing->latch_setup_s);
-	return timing->counter_setup_s[STAGE_LINE];
+	if (wired->outputs == OUTPUTS_REGISTERED)
+		return larger(timing->counter_setup_s[stage], timing->latch_setup_s);
+	return timing->counter_setup_s[stage];
 }
 
-// False if a figure does not fit 64 bits.
-static bool measure(const struct trial *trial, struct speed_result *result)
+// A look-up at the address that the stage's own latch or counter holds, or (without `delay`) that another chip answers.
+static void add_pass(const struct trial *trial, enum stage stage, bool delay, struct speed_result *result)
+{
+	const struct timing *timing = &trial->timeline->plan->timing;
+	const bool counter = wiring_stage(&trial->wiring, stage)->advance == ADVANCE_COUNT;
+	struct speed_pass *pass = &result->passes[result->pass_count++];
+	*pass = (struct speed_pass){.has_delay = delay, .counter = counter, .chip = slowest_chip(&trial->wiring, stage)};
+	pass->delay_s = !delay ? FRACTION_ZERO : counter ? timing->counter_delay_s[stage] : timing->latch_delay_s;
+	pass->access_s = trial->wiring.chips[pass->chip].access_s;
+}
+
+// A stage's own look-ups. An asynchronous clear is looked up before the row of the state that it leads to.
+static void add_stage(const struct trial *trial, enum stage stage, bool delay, struct speed_result *result)
+{
+	add_pass(trial, stage, delay, result);
+	if (clears_at_once(wiring_stage(&trial->wiring, stage)))
+		add_pass(trial, stage, true, result);
+}
+
+// Sums up. False if a figure does not fit 64 bits.
+static bool finish(const struct trial *trial, int64_t ticks, struct speed_result *result)
 {
 	const struct plan *plan = trial->timeline->plan;
-	const struct timing *timing = &plan->timing;
-	const bool counts = trial->wiring.line.advance == ADVANCE_COUNT;
-	result->slowest_chip = slowest_chip(&trial->wiring);
-	result->delay_s = counts ? timing->counter_delay_s[STAGE_LINE] : timing->latch_delay_s;
-	result->access_s = trial->wiring.chips[result->slowest_chip].access_s;
-	result->setup_s = setup_of(&trial->wiring, timing);
-	result->margin_s = timing->margin_s;
-	result->second_pass = counts && trial->wiring.line.clear == CLEAR_ASYNC;
-	struct fraction pass_s, needed_s;
-	if (!fraction_divide(fraction_whole(trial->lap.shortest_ticks), plan->clock.master_hz, &result->cell_s) ||
-	    !fraction_multiply(timing->share, result->cell_s, &result->available_s) ||
-	    !fraction_add(result->delay_s, result->access_s, &pass_s))
+	struct fraction needed_s = result->setup_s;
+	result->margin_s = plan->timing.margin_s;
+	if (!fraction_divide(fraction_whole(ticks), plan->clock.master_hz, &result->cell_s) ||
+	    !fraction_multiply(plan->timing.share, result->cell_s, &result->available_s))
 		return false;
-	needed_s = pass_s;
-	if (result->second_pass && !fraction_add(needed_s, pass_s, &needed_s))
-		return false;
-	return fraction_add(needed_s, result->setup_s, &needed_s) &&
-	       fraction_add(needed_s, result->margin_s, &result->needed_s) &&
+	for (unsigned pass = 0; pass < result->pass_count; pass++)
+		if (!fraction_add(needed_s, result->passes[pass].delay_s, &needed_s) ||
+		    !fraction_add(needed_s, result->passes[pass].access_s, &needed_s))
+			return false;
+	return fraction_add(needed_s, result->margin_s, &result->needed_s) &&
 	       fraction_subtract(result->available_s, result->needed_s, &result->slack_s);
+}
+
+// The line stage's way; with `waits`, after that of a frame stage whose kind is not latched: both move at the end of a line.
+static bool measure_cell(const struct trial *trial, bool waits, struct speed_result *result)
+{
+	const struct wiring *wiring = &trial->wiring;
+	*result = (struct speed_result){.setup_s = setup_of(trial, STAGE_LINE)};
+	if (wiring->form == FORM_LINE_FRAME && wiring->line.outputs == OUTPUTS_DIRECT) // step goes straight to the frame stage
+		result->setup_s = larger(result->setup_s, setup_of(trial, STAGE_FRAME));
+	if (waits)
+		add_stage(trial, STAGE_FRAME, true, result);
+	add_stage(trial, STAGE_LINE, !waits, result);
+	return finish(trial, trial->lap.shortest_ticks, result);
+}
+
+// The frame stage's own way, for which it has a whole line.
+static bool measure_line(const struct trial *trial, struct speed_result *result)
+{
+	int64_t shortest = INT64_MAX;
+	for (uint32_t line = 0; line < trial->timeline->line_count; line++)
+		if (trial->lap.line_ticks[line] < shortest)
+			shortest = trial->lap.line_ticks[line];
+	*result = (struct speed_result){.of_line = true, .setup_s = setup_of(trial, STAGE_FRAME)};
+	add_stage(trial, STAGE_FRAME, true, result);
+	return finish(trial, shortest, result);
+}
+
+static void keep_slower(struct speed_result *slowest, const struct speed_result *other)
+{
+	if (fraction_compare(other->slack_s, slowest->slack_s) < 0)
+		*slowest = *other;
+}
+
+// The way with the least slack. False if a figure does not fit 64 bits.
+static bool measure(const struct trial *trial, struct speed_result *result)
+{
+	const struct wiring *wiring = &trial->wiring;
+	struct speed_result other;
+	if (!measure_cell(trial, false, result))
+		return false;
+	if (wiring->form == FORM_LOOP)
+		return true;
+	if (!measure_line(trial, &other))
+		return false;
+	keep_slower(result, &other);
+	if (wiring->kind_bits == 0 || wiring->frame.outputs == OUTPUTS_REGISTERED)
+		return true;
+	if (!measure_cell(trial, true, &other))
+		return false;
+	keep_slower(result, &other);
+	return true;
 }
 
 bool prove_speed(struct trial *trial)
 {
-	struct speed_result result = {FRACTION_ZERO, FRACTION_ZERO, FRACTION_ZERO, FRACTION_ZERO, FRACTION_ZERO, FRACTION_ZERO,
-	                              false, FRACTION_ZERO, FRACTION_ZERO, 0};
+	struct speed_result result;
 	if (!measure(trial, &result)) {
 		proof_not_judged(trial, PROOF_SPEED, "not judged: the times do not fit fractions of 64 bits");
 		return true;
 	}
 	struct proofs *proofs = trial->proofs;
-	if (trial->bank == 0 || fraction_compare(result.slack_s, proofs->speed.slack_s) < 0)
+	if (proofs->speed.pass_count == 0 || fraction_compare(result.slack_s, proofs->speed.slack_s) < 0)
 		proofs->speed = result;
 	if (result.slack_s.numerator < 0)
 		proofs->proof[PROOF_SPEED].verdict = VERDICT_FAIL;

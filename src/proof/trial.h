@@ -105,8 +105,8 @@ const char *state_words(const struct trial *trial, uint32_t state);
 // A counterexample at a state of a second loop, without a cell. Its words, "its next state is …", say what would mend its
 // row, and are NULL when memory is out.
 struct counterexample blame_loop(const struct trial *trial, uint32_t state);
-// The chip with the longest access time; of equals, the first. Cannot fail.
-size_t slowest_chip(const struct wiring *wiring);
+// The chip of a stage with the longest access time; of equals, the first. Cannot fail.
+size_t slowest_chip(const struct wiring *wiring, enum stage stage);
 // The cell before, around the frame. Cannot fail.
 uint32_t cell_before(const struct trial *trial, uint32_t cell);
 

@@ -51,8 +51,9 @@ void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind k
 //                 level (clear_unsettled later where an async clear strikes), "direct": data outputs are direct, and if so
 //                 time unsettled (_s, _ns) and "unsettled_chip": its label, "async_clear": clear goes straight into an
 //                 asynchronous pin, and if so time clear_unsettled (_s, _ns) and "clear_chip": its label }
-//   "speed":    { times cell, available, delay, access, setup, margin, needed, slack (_s, _ns), "second_pass": delay and
-//                 access count twice, "slowest_chip": its label }
+//   "speed":    { "of": "cell" or "line" (the frame stage's own way), times cell (or line), available, delay and access
+//                 (of the first look-up), setup, margin, needed, slack (_s, _ns), "passes": [ { "chip": label of the slowest, "counter": a counter holds the address, times
+//                 delay (0 where the address is another chip's answer), access } ], one look-up after the other }
 //   "sweep":    { "sweeps": [ { "bits": as the plan has them, "kept": true or false, "values", "missing", and if some are
 //                 "first_missing", times worst_gap and within (_s, _ms), "worst_value" } ] }
 //

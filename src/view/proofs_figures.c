@@ -298,32 +298,49 @@ static void put_glitches(struct text *out, const struct proofs *proofs)
 		text_put(out, ", and the data outputs are latched");
 }
 
-// " of the shortest cell's 628.571 ns", " of 314.286 ns (1/2 of the shortest cell)".
+// " of the shortest cell's 628.571 ns", " of 314.286 ns (1/2 of the shortest cell)"; or line.
 static void put_available(struct text *out, const struct proofs *proofs)
 {
 	const struct speed_result *speed = &proofs->speed;
 	const struct fraction share = plan_of(proofs)->timing.share;
 	const bool whole = fraction_compare(share, fraction_whole(1)) == 0;
-	text_put(out, whole ? " of the shortest cell's " : " of ");
+	const char *what = speed->of_line ? "line" : "cell";
+	if (whole)
+		text_printf(out, " of the shortest %s's ", what);
+	else
+		text_put(out, " of ");
 	text_put_time_in(out, speed->available_s, UNIT_NANOSECONDS);
 	if (whole)
 		return;
 	text_put(out, " (");
 	text_put_fraction(out, share);
-	text_put(out, " of the shortest cell)");
+	text_printf(out, " of the shortest %s)", what);
+}
+
+// "latch 41 + access 150 of rom0".
+static void put_pass(struct text *out, const struct proofs *proofs, const struct speed_pass *pass)
+{
+	if (pass->has_delay) {
+		text_put(out, pass->counter ? "counter " : "latch ");
+		text_put_time_number(out, pass->delay_s, UNIT_NANOSECONDS);
+		text_put(out, " + ");
+	}
+	text_put(out, "access ");
+	text_put_time_number(out, pass->access_s, UNIT_NANOSECONDS);
+	text_printf(out, " of %s", plan_of(proofs)->chips[pass->chip].label);
 }
 
 // "latch 41 + access 150 of rom0 + setup 15 + margin 20", in nanoseconds.
 static void put_sum(struct text *out, const struct proofs *proofs)
 {
-	const struct plan *plan = plan_of(proofs);
 	const struct speed_result *speed = &proofs->speed;
-	text_put(out, speed->second_pass ? "2 x (" : "");
-	text_put(out, plan->machine.line.advance == ADVANCE_COUNT ? "counter " : "latch ");
-	text_put_time_number(out, speed->delay_s, UNIT_NANOSECONDS);
-	text_put(out, " + access ");
-	text_put_time_number(out, speed->access_s, UNIT_NANOSECONDS);
-	text_printf(out, " of %s%s + setup ", plan->chips[speed->slowest_chip].label, speed->second_pass ? ")" : "");
+	const bool twice = plan_of(proofs)->machine.form == FORM_LOOP && speed->pass_count == 2;
+	text_put(out, twice ? "2 x (" : "");
+	for (unsigned pass = 0; pass < (twice ? 1 : speed->pass_count); pass++) {
+		text_put(out, pass > 0 ? " + " : "");
+		put_pass(out, proofs, &speed->passes[pass]);
+	}
+	text_put(out, twice ? ") + setup " : " + setup ");
 	text_put_time_number(out, speed->setup_s, UNIT_NANOSECONDS);
 	text_put(out, " + margin ");
 	text_put_time_number(out, speed->margin_s, UNIT_NANOSECONDS);

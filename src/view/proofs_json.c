@@ -189,19 +189,32 @@ static void put_glitches(json_t **object, const struct proofs *proofs)
 	}
 }
 
+static json_t *pass_json(const struct proofs *proofs, const struct speed_pass *pass)
+{
+	json_t *object = json_object();
+	json_put(&object, "chip", json_string(plan_of(proofs)->chips[pass->chip].label));
+	json_put(&object, "counter", truth(pass->counter));
+	json_put_time(&object, "delay", pass->delay_s, UNIT_NANOSECONDS);
+	json_put_time(&object, "access", pass->access_s, UNIT_NANOSECONDS);
+	return object;
+}
+
 static void put_speed(json_t **object, const struct proofs *proofs)
 {
 	const struct speed_result *speed = &proofs->speed;
-	json_put_time(object, "cell", speed->cell_s, UNIT_NANOSECONDS);
+	json_t *passes = json_array();
+	for (unsigned pass = 0; pass < speed->pass_count; pass++)
+		json_append(&passes, pass_json(proofs, &speed->passes[pass]));
+	json_put(object, "of", json_string(speed->of_line ? "line" : "cell"));
+	json_put_time(object, speed->of_line ? "line" : "cell", speed->cell_s, UNIT_NANOSECONDS);
 	json_put_time(object, "available", speed->available_s, UNIT_NANOSECONDS);
-	json_put_time(object, "delay", speed->delay_s, UNIT_NANOSECONDS);
-	json_put_time(object, "access", speed->access_s, UNIT_NANOSECONDS);
+	json_put_time(object, "delay", speed->passes[0].delay_s, UNIT_NANOSECONDS);
+	json_put_time(object, "access", speed->passes[0].access_s, UNIT_NANOSECONDS);
+	json_put(object, "passes", passes);
 	json_put_time(object, "setup", speed->setup_s, UNIT_NANOSECONDS);
 	json_put_time(object, "margin", speed->margin_s, UNIT_NANOSECONDS);
 	json_put_time(object, "needed", speed->needed_s, UNIT_NANOSECONDS);
 	json_put_time(object, "slack", speed->slack_s, UNIT_NANOSECONDS);
-	json_put(object, "second_pass", truth(speed->second_pass));
-	json_put(object, "slowest_chip", json_string(plan_of(proofs)->chips[speed->slowest_chip].label));
 }
 
 static json_t *sweep_json(const struct sweep *asked, const struct sweep_result *sweep)

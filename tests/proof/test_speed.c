@@ -82,12 +82,15 @@ static void all_figures(void **test)
 	const struct speed_result *result = &proofs->speed;
 	assert_ratio(result->cell_s, 1, 2000000);
 	assert_ratio(result->available_s, 1, 4000000);
-	assert_ratio(result->delay_s, 3, 100000000);
-	assert_ratio(result->access_s, 3, 20000000);
+	assert_int_equal(result->pass_count, 1);
+	assert_true(result->passes[0].has_delay);
+	assert_false(result->passes[0].counter);
+	assert_ratio(result->passes[0].delay_s, 3, 100000000);
+	assert_ratio(result->passes[0].access_s, 3, 20000000);
 	assert_ratio(result->setup_s, 3, 200000000);
 	assert_ratio(result->margin_s, 1, 50000000);
-	assert_false(result->second_pass);
-	assert_int_equal(result->slowest_chip, 0);
+	assert_int_equal(result->passes[0].chip, 0);
+	assert_false(result->of_line);
 	assert_verdict(proofs, PROOF_SPEED, VERDICT_PASS);
 	proofs_destroy(proofs);
 	hand->chips[0].access_s = NS(185); // exactly the 250 ns that there are
@@ -117,8 +120,8 @@ static void slowest_chip(void **test)
 	chips[2]->access_s = NS(150);
 	burn_small(hand, small_states);
 	struct proofs *proofs = prove(hand, 0);
-	assert_int_equal(proofs->speed.slowest_chip, 1);
-	assert_ratio(proofs->speed.access_s, 1, 5000000);
+	assert_int_equal(proofs->speed.passes[0].chip, 1);
+	assert_ratio(proofs->speed.passes[0].access_s, 1, 5000000);
 	proofs_destroy(proofs);
 	by_hand_destroy(hand);
 }

@@ -78,10 +78,11 @@ static void the_figures_of_a_good_plan(void **state)
 		"{'verdict':'pass','must':false,'decoded':true,'edges':26462,'multi_bit_edges':0,'disturbed':[],"
 		"'settle_s':'79/1000000000','settle_ns':79.0,'direct':false,'async_clear':false}");
 	assert_proof(&harbour, PROOF_SPEED,
-		"{'verdict':'pass','must':false,'cell_s':'11/17500000','cell_ns':628.571429,'available_s':'11/17500000',"
+		"{'verdict':'pass','must':false,'of':'cell','cell_s':'11/17500000','cell_ns':628.571429,'available_s':'11/17500000',"
 		"'available_ns':628.571429,'delay_s':'41/1000000000','delay_ns':41.0,'access_s':'3/20000000','access_ns':150.0,"
+		"'passes':[{'chip':'rom0','counter':false,'delay_s':'41/1000000000','delay_ns':41.0,'access_s':'3/20000000','access_ns':150.0}],"
 		"'setup_s':'3/200000000','setup_ns':15.0,'margin_s':'1/50000000','margin_ns':20.0,'needed_s':'113/500000000',"
-		"'needed_ns':226.0,'slack_s':'1409/3500000000','slack_ns':402.571429,'second_pass':false,'slowest_chip':'rom0'}");
+		"'needed_ns':226.0,'slack_s':'1409/3500000000','slack_ns':402.571429}");
 	assert_proof(&harbour, PROOF_SWEEP,
 		"{'verdict':'pass','must':true,'sweeps':[{'bits':'at.6..0','kept':true,'values':128,'missing':0,"
 		"'worst_gap_s':'3/2500','worst_gap_ms':1.2,'worst_value':127,'within_s':'1/500','within_ms':2.0}]}");

@@ -60,7 +60,7 @@ static void what_the_plan_does_not_ask_is_none(void **state)
 	struct proofs *proofs = &harbour.proofs;
 	harbour.plan.sweep_count = 0;
 	harbour.plan.clock.has_subcarrier = false;
-	harbour.plan.machine.line.advance = ADVANCE_COUNT;
+	proofs->speed.passes[0].counter = true;
 	proofs->proof[PROOF_COLOUR].verdict = VERDICT_ABSENT;
 	proofs->proof[PROOF_GLITCHES].verdict = VERDICT_ABSENT;
 	proofs->proof[PROOF_SWEEP].verdict = VERDICT_ABSENT;
@@ -416,8 +416,10 @@ static void too_slow_a_chip_says_by_how_much(void **state)
 	harbour.plan.timing.share = (struct fraction){1, 2};
 	harbour.plan.machine.line.advance = ADVANCE_COUNT;
 	speed->available_s = (struct fraction){11, 35000000};
-	speed->second_pass = true;
-	speed->slowest_chip = CHIP_ROM1;
+	speed->passes[0].counter = true;
+	speed->passes[0].chip = CHIP_ROM1;
+	speed->passes[1] = speed->passes[0];
+	speed->pass_count = 2;
 	speed->needed_s = (struct fraction){417, 1000000000};
 	speed->slack_s = (struct fraction){-719, 7000000000};
 	harbour.proofs.proof[PROOF_SPEED].verdict = VERDICT_FAIL;
