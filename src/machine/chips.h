@@ -46,6 +46,7 @@ static inline size_t chip_address(const struct chip_reader *reader, uint32_t add
 // The two stages of a line-frame machine, in the arena; NULL when memory is out. The readers must be there.
 struct two_stages *two_stages_create(struct arena *arena, const struct machine *machine);
 uint32_t two_stages_settle(const struct two_stages *two, uint32_t state);
+uint32_t two_stages_passing(const struct two_stages *two, uint32_t state);
 uint32_t two_stages_next(const struct two_stages *two, uint32_t state);
 bool two_stages_steps(const struct two_stages *two, uint32_t state);
 uint32_t two_stages_kind(const struct two_stages *two, uint32_t state);

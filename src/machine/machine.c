@@ -91,6 +91,15 @@ uint32_t machine_next(const struct machine *machine, uint32_t state)
 	return next;
 }
 
+uint32_t machine_passing(const struct machine *machine, uint32_t state)
+{
+	if (machine->two != NULL)
+		return two_stages_passing(machine->two, state);
+	if (!clears_at_once(&machine->wiring.line) || machine_clears(machine, state))
+		return machine_next(machine, state);
+	return (state + 1) & machine->state_mask;
+}
+
 bool machine_steps(const struct machine *machine, uint32_t state)
 {
 	return machine->two != NULL && two_stages_steps(machine->two, state);

@@ -25,6 +25,10 @@ struct row machine_row(const struct machine *machine, enum stage stage, uint32_t
 uint32_t machine_settle(const struct machine *machine, uint32_t state);
 uint32_t machine_next(const struct machine *machine, uint32_t state);
 
+// What counters with an async clear show for an instant at the edge that ends a settled state's cell, before they settle to
+// machine_next; the same where nothing is cleared.
+uint32_t machine_passing(const struct machine *machine, uint32_t state);
+
 // Whether the frame stage steps at the edge that ends a settled state's cell. Never in a loop machine.
 bool machine_steps(const struct machine *machine, uint32_t state);
 

@@ -97,7 +97,7 @@ bool two_stages_steps(const struct two_stages *two, uint32_t state)
 	return (line_row(two, state & two->line.state_mask, two_stages_kind(two, state)) & STEPS) != 0;
 }
 
-uint32_t two_stages_next(const struct two_stages *two, uint32_t state)
+uint32_t two_stages_passing(const struct two_stages *two, uint32_t state)
 {
 	const struct feedback *at = &two->at;
 	const uint32_t line_state = state & two->line.state_mask, frame_state = state >> at->frame;
@@ -109,6 +109,11 @@ uint32_t two_stages_next(const struct two_stages *two, uint32_t state)
 		next |= steps ? two->kinds[frame_state] << at->kind : state & two->kind_mask << at->kind;
 	if (at->has_step && (row & STEPS) != 0)
 		next |= (uint32_t)1 << at->step;
-	next |= advanced(&two->line, line_state, row);
+	return next | advanced(&two->line, line_state, row);
+}
+
+uint32_t two_stages_next(const struct two_stages *two, uint32_t state)
+{
+	const uint32_t next = two_stages_passing(two, state);
 	return two->line.at_once || two->frame.at_once ? two_stages_settle(two, next) : next;
 }

@@ -4,7 +4,6 @@
 #include <string.h>
 
 #include "base/arena.h"
-#include "catalogue/catalogue.h"
 #include "proof/trial.h"
 
 #define MEMO_SIZE 4096u
@@ -38,13 +37,13 @@ static bool memo_flickers(struct search *search, uint32_t from, uint32_t to, uin
 	return memo->flickers;
 }
 
-// The state that the counter shows for an instant on its way from one cell to the next, with an async clear; the state
+// The state that a counter shows for an instant on its way from one cell to the next, with an async clear; the state
 // before the edge if there is none.
 static uint32_t passing_state(const struct trial *trial, uint32_t from, uint32_t to)
 {
-	if (trial->wiring.line.advance != ADVANCE_COUNT || trial->wiring.line.clear != CLEAR_ASYNC)
+	if (!clears_at_once(&trial->wiring.line))
 		return from;
-	uint32_t counted = (from + 1) & (uint32_t)(((uint64_t)1 << trial->wiring.line.state_bits) - 1);
+	const uint32_t counted = machine_passing(trial->machine, from);
 	return counted == to ? from : counted;
 }
 
@@ -159,60 +158,28 @@ static bool search_all(struct trial *trial)
 	return true;
 }
 
-// How long after an edge what hangs on the state is unsettled, if it takes `answer_s` to answer.
-static struct fraction unsettled(const struct trial *trial, struct fraction answer_s)
+// When what hangs on the line stage's state has its level.
+static struct fraction settle_time(const struct trial *trial)
 {
 	const struct timing *timing = &trial->timeline->plan->timing;
 	const struct fraction delay_s = trial->wiring.line.advance == ADVANCE_COUNT ? timing->counter_delay_s[STAGE_LINE] : timing->latch_delay_s;
-	// Nanoseconds of data sheets: far from 64 bits. Should they not fit, the answer alone stands.
-	struct fraction sum_s = answer_s;
-	fraction_add(delay_s, answer_s, &sum_s);
+	// Nanoseconds of data sheets: far from 64 bits. Should they not fit, the decoder's alone stands.
+	struct fraction sum_s = timing->decoder_delay_s;
+	fraction_add(delay_s, timing->decoder_delay_s, &sum_s);
 	return sum_s;
-}
-
-static void measure_direct(const struct trial *trial, struct glitch_result *result)
-{
-	const struct chip *chip = &trial->wiring.chips[slowest_chip(&trial->wiring, STAGE_LINE)];
-	result->direct = true;
-	result->unsettled_part = chip->label;
-	result->unsettled_s = unsettled(trial, chip->access_s);
-}
-
-static bool carries_clear(const struct chip *chip)
-{
-	for (unsigned pin = 0; pin < chip->part->data_pins; pin++)
-		if (chip->data[pin].kind == DATA_CLEAR)
-			return true;
-	return false;
-}
-
-// Clear is never latched. An asynchronous pin obeys it while the address settles; a synchronous one looks only at the edge.
-static void measure_clear(const struct trial *trial, struct glitch_result *result)
-{
-	const struct chip *slowest = NULL;
-	for (size_t index = 0; index < trial->wiring.chip_count; index++) {
-		const struct chip *chip = &trial->wiring.chips[index];
-		if (carries_clear(chip) && (slowest == NULL || fraction_compare(chip->access_s, slowest->access_s) > 0))
-			slowest = chip;
-	}
-	if (slowest == NULL)
-		return;
-	result->async_clear = true;
-	result->clear_part = slowest->label;
-	result->clear_unsettled_s = unsettled(trial, slowest->access_s);
 }
 
 bool prove_glitches(struct trial *trial)
 {
 	struct glitch_result *result = &trial->proofs->glitches;
+	bool unsettled = false;
 	result->has_field_signals = trial->decoders->count > 0;
 	if (result->has_field_signals)
-		result->settle_s = unsettled(trial, trial->timeline->plan->timing.decoder_delay_s);
-	if (trial->wiring.line.outputs == OUTPUTS_DIRECT)
-		measure_direct(trial, result);
-	if (clears_at_once(&trial->wiring.line))
-		measure_clear(trial, result);
-	if (!result->has_field_signals && !result->direct && !result->async_clear)
+		result->settle_s = settle_time(trial);
+	measure_unsettled(trial);
+	for (unsigned stage = 0; stage < STAGE_COUNT; stage++)
+		unsettled = unsettled || result->stages[stage].direct || result->stages[stage].async_clear;
+	if (!result->has_field_signals && !unsettled)
 		trial->proofs->proof[PROOF_GLITCHES].verdict = VERDICT_ABSENT;
 	return !result->has_field_signals || search_all(trial);
 }

@@ -110,6 +110,19 @@ struct glitch_edge {
 	uint64_t count;            // how many edges of the frame disturb this signal
 };
 
+// What a stage takes straight from its EEPROMs.
+struct stage_glitches {
+	bool direct;                 // data outputs are direct
+	struct fraction unsettled_s; // for direct outputs: from an edge until they are settled
+	const char *unsettled_part;  // label of the slowest chip
+	bool async_clear;            // clear goes from the EEPROM straight into an asynchronous pin
+	struct fraction clear_unsettled_s; // then: from an edge until clear is settled
+	const char *clear_part;      // label of the slowest chip that carries clear
+	bool passes;                 // with an async clear: the frame comes by a state that falls to 0
+	uint32_t passing_address;    // of its row: the state, and above it the kind where the stage sees one
+	uint64_t passing_pins;       // direct signals, of either stage, that spike while it lasts
+};
+
 struct glitch_result {
 	bool has_field_signals;
 	uint64_t edges;            // examined
@@ -117,12 +130,7 @@ struct glitch_result {
 	struct glitch_edge *first; // for each disturbed signal its first edge
 	size_t disturbed;
 	struct fraction settle_s;    // pins decoded from the state: latch or counter delay + decoder delay
-	bool direct;               // data outputs are direct
-	struct fraction unsettled_s; // for direct outputs: latch or counter delay + access time
-	const char *unsettled_part;  // label of the slowest chip
-	bool async_clear;            // clear goes from the EEPROM straight into an asynchronous pin
-	struct fraction clear_unsettled_s; // then: counter delay + access time
-	const char *clear_part;      // label of the slowest chip that carries clear
+	struct stage_glitches stages[STAGE_COUNT];
 };
 
 #define SPEED_PASSES 4

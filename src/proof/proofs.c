@@ -46,7 +46,9 @@ static void zero_figures(struct proofs *proofs)
 	proofs->colour.cycles_per_line = proofs->colour.cycles_per_frame = zero;
 	proofs->power_up.longest_lines = zero;
 	proofs->upset.mean_cells = proofs->upset.worst_slip_lines = proofs->upset.mean_slip_cells = zero;
-	proofs->glitches.settle_s = proofs->glitches.unsettled_s = proofs->glitches.clear_unsettled_s = zero;
+	proofs->glitches.settle_s = zero;
+	for (unsigned stage = 0; stage < STAGE_COUNT; stage++)
+		proofs->glitches.stages[stage].unsettled_s = proofs->glitches.stages[stage].clear_unsettled_s = zero;
 	proofs->speed = (struct speed_result){.cell_s = zero, .available_s = zero, .setup_s = zero, .margin_s = zero, .needed_s = zero,
 	                                      .slack_s = zero};
 	for (unsigned kind = 0; kind < PROOF_COUNT; kind++)

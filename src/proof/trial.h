@@ -74,6 +74,9 @@ bool prove_glitches(struct trial *trial);
 bool prove_speed(struct trial *trial);
 bool prove_sweep(struct trial *trial);
 
+// What glitches has to say of direct outputs and asynchronous clears. Cannot fail.
+void measure_unsettled(struct trial *trial);
+
 // A proof fails: its verdict, and the counterexample if it is the first. `found` must have its words; NULL words mean
 // that memory is out, and give false.
 bool proof_fails(struct trial *trial, enum proof_kind kind, struct counterexample found);

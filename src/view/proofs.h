@@ -30,6 +30,10 @@ void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind k
 // that unit; for any other fraction NAME, "NAME" is exact and "NAME_rounded" the decimal. Rounded numbers have at most 6
 // decimals and are reals.
 //
+// STATE is "state"; in a line-frame machine also "stage": "line" or "frame" and, of the line stage, "kind". A whole state ("start_state",
+// "longest_state", …) is an integer, or there { "H", "step", "kind", "V" } without what is not latched; a "bit" there goes with "part",
+// one of these four.
+//
 // PLACE is five keys: "line" (in the frame), "line_type" (its name), "cell" (in the line), "region" (its name), "frame_cell"
 // (in the frame).
 //
@@ -50,7 +54,9 @@ void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind k
 //                 "between_code", "to_code" } ], if decoded time settle (_s, _ns) from an edge until decoded pins have their
 //                 level (clear_unsettled later where an async clear strikes), "direct": data outputs are direct, and if so
 //                 time unsettled (_s, _ns) and "unsettled_chip": its label, "async_clear": clear goes straight into an
-//                 asynchronous pin, and if so time clear_unsettled (_s, _ns) and "clear_chip": its label }
+//                 asynchronous pin, and if so time clear_unsettled (_s, _ns) and "clear_chip": its label, and "passing": { STATE that
+//                 falls to 0 at once, "spikes": [direct signals that spike meanwhile] }; in a line-frame machine these are the line
+//                 stage's, and "frame": { the same keys of the frame stage } }
 //   "speed":    { "of": "cell" or "line" (the frame stage's own way), times cell (or line), available, delay and access
 //                 (of the first look-up), setup, margin, needed, slack (_s, _ns), "passes": [ { "chip": label of the slowest, "counter": a counter holds the address, times
 //                 delay (0 where the address is another chip's answer), access } ], one look-up after the other }
@@ -58,7 +64,7 @@ void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind k
 //                 "first_missing", times worst_gap and within (_s, _ms), "worst_value" } ] }
 //
 // counterexample: { "what": in words, with expected and found, "bank", "hint" (what may help, if
-//   something is known), PLACE (not of power-up), "state" (whose row was read; left out where
+//   something is known), PLACE (not of power-up), STATE (whose row was read; left out where
 //   there are no images, and where the fault may follow from the earlier one of another proof), "signal": its name, if a pin is
 //   wrong, and if a byte is to blame "chip": label, "address", "byte" (of a 16-bit chip: the word, and its address counts words) }.
 //   One without a place or state has "what" and "bank" only.

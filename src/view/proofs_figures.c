@@ -3,14 +3,9 @@
 
 #include "base/text.h"
 #include "view/proofs_shared.h"
+#include "view/states.h"
 
 #define PLACES 3
-
-static void put_state(struct text *out, const struct proofs *proofs, uint32_t state)
-{
-	text_put(out, "state ");
-	text_put_hex(out, state, state_bits(proofs));
-}
 
 static void put_bank(struct text *out, const struct proofs *proofs, uint32_t bank)
 {
@@ -193,7 +188,9 @@ static void put_power_up(struct text *out, const struct proofs *proofs)
 static void put_worst(struct text *out, const struct proofs *proofs, uint32_t cell, unsigned bit)
 {
 	const struct cell_place place = timeline_place(proofs->timeline, cell);
-	text_printf(out, " at worst (bit %u in line %" PRIu32 ", cell %" PRIu32 ")", bit, place.line, place.cell);
+	text_put(out, " at worst (");
+	put_state_bit(out, proofs, bit);
+	text_printf(out, " in line %" PRIu32 ", cell %" PRIu32 ")", place.line, place.cell);
 }
 
 static void put_mean(struct text *out, struct fraction mean)
@@ -249,10 +246,10 @@ static void put_settled(struct text *out, const struct proofs *proofs)
 	text_put(out, " + decoder ");
 	text_put_time_number(out, plan->timing.decoder_delay_s, UNIT_NANOSECONDS);
 	text_put(out, ")");
-	if (!glitches->async_clear)
+	if (!glitches->stages[STAGE_LINE].async_clear)
 		return;
 	text_put(out, ", ");
-	text_put_time_in(out, glitches->clear_unsettled_s, UNIT_NANOSECONDS);
+	text_put_time_in(out, glitches->stages[STAGE_LINE].clear_unsettled_s, UNIT_NANOSECONDS);
 	text_put(out, " later where the counter is cleared");
 }
 
@@ -272,29 +269,59 @@ static void put_decoded(struct text *out, const struct proofs *proofs)
 	put_settled(out, proofs);
 }
 
-static void put_unsettled(struct text *out, struct fraction seconds)
+static void put_unsettled(struct text *out, struct fraction seconds, enum stage stage)
 {
 	text_put(out, "unsettled for ");
 	text_put_time_in(out, seconds, UNIT_NANOSECONDS);
-	text_put(out, " after each edge");
+	text_put(out, stage == STAGE_LINE ? " after each edge" : " after each step");
+}
+
+// The state that an async clear passes through, and what spikes meanwhile.
+static void put_passing(struct text *out, const struct proofs *proofs, enum stage stage)
+{
+	const struct plan *plan = plan_of(proofs);
+	const struct stage_glitches *glitches = &proofs->glitches.stages[stage];
+	bool any = false;
+	text_put(out, "; it passes through ");
+	put_row_state(out, proofs, stage, glitches->passing_address);
+	for (size_t signal = 0; signal < plan->signal_count; signal++) {
+		if ((glitches->passing_pins >> signal & 1) == 0)
+			continue;
+		text_printf(out, "%s%s", any ? ", " : ", which spikes ", plan->signals[signal].name);
+		any = true;
+	}
+	if (!any)
+		text_put(out, glitches->direct ? ", in which no data output spikes" : "");
+}
+
+static void put_stage_glitches(struct text *out, const struct proofs *proofs, enum stage stage)
+{
+	const struct stage_glitches *glitches = &proofs->glitches.stages[stage];
+	const bool two = plan_of(proofs)->machine.form == FORM_LINE_FRAME;
+	const char *of = !two ? "" : stage == STAGE_LINE ? " of the line stage" : " of the frame stage";
+	if (glitches->direct) {
+		text_printf(out, "; the data outputs%s are taken straight from the EEPROMs and are ", of);
+		put_unsettled(out, glitches->unsettled_s, stage);
+		text_printf(out, " (%s)", glitches->unsettled_part);
+	}
+	if (!glitches->async_clear)
+		return;
+	text_printf(out, "; clear%s is taken straight from %s into an asynchronous pin and is ", of, glitches->clear_part);
+	put_unsettled(out, glitches->clear_unsettled_s, stage);
+	text_put(out, ", when a spike on it clears the counter too early: gate it, or use clear: sync");
+	if (glitches->passes)
+		put_passing(out, proofs, stage);
 }
 
 // "The data outputs are latched" is said only where nothing else is to be said: it must not outshine an unsettled clear.
 static void put_glitches(struct text *out, const struct proofs *proofs)
 {
 	const struct glitch_result *glitches = &proofs->glitches;
+	const struct stage_glitches *line = &glitches->stages[STAGE_LINE], *frame = &glitches->stages[STAGE_FRAME];
 	put_decoded(out, proofs);
-	if (glitches->direct) {
-		text_put(out, "; the data outputs are taken straight from the EEPROMs and are ");
-		put_unsettled(out, glitches->unsettled_s);
-		text_printf(out, " (%s)", glitches->unsettled_part);
-	}
-	if (glitches->async_clear) {
-		text_printf(out, "; clear is taken straight from %s into an asynchronous pin and is ", glitches->clear_part);
-		put_unsettled(out, glitches->clear_unsettled_s);
-		text_put(out, ", when a spike on it clears the counter too early: gate it, or use clear: sync");
-	}
-	if (!glitches->direct && !glitches->async_clear && !glitches->has_field_signals)
+	put_stage_glitches(out, proofs, STAGE_LINE);
+	put_stage_glitches(out, proofs, STAGE_FRAME);
+	if (!line->direct && !line->async_clear && !frame->direct && !frame->async_clear && !glitches->has_field_signals)
 		text_put(out, ", and the data outputs are latched");
 }
 

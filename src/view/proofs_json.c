@@ -1,6 +1,7 @@
 #include "base/text.h"
 #include "view/proofs.h"
 #include "view/proofs_shared.h"
+#include "view/states.h"
 
 static json_t *count(uint64_t value)
 {
@@ -43,7 +44,7 @@ static json_t *counterexample_json(const struct proofs *proofs, enum proof_kind 
 	if (has_place(proofs, kind))
 		put_place(&object, proofs->timeline, found->cell);
 	if (found->state != NO_STATE)
-		json_put(&object, "state", count(found->state));
+		json_put_row_state(&object, proofs, found->stage, found->state);
 	if (found->signal != SIZE_MAX)
 		json_put(&object, "signal", json_string(plan->signals[found->signal].name));
 	if (found->byte_known)
@@ -61,7 +62,7 @@ static void put_closure(json_t **object, const struct proofs *proofs)
 	if (seconds_of_ticks(&plan_of(proofs)->clock, closure->ticks, &seconds))
 		json_put_time(object, "frame", seconds, UNIT_MILLISECONDS);
 	json_put(object, "period_cells", count(closure->period_cells));
-	json_put(object, "start_state", count(closure->start_state));
+	json_put(object, "start_state", state_json(proofs, closure->start_state));
 	json_put(object, "banks", count(proofs->banks));
 }
 
@@ -119,13 +120,13 @@ static void put_power_up(json_t **object, const struct proofs *proofs)
 	json_put(object, "cleared_states", count(power_up->cleared_states));
 	json_put(object, "longest_cells", count(power_up->longest_cells));
 	json_put_fraction(object, "longest_lines", power_up->longest_lines);
-	json_put(object, "longest_state", count(power_up->longest_state));
+	json_put(object, "longest_state", state_json(proofs, power_up->longest_state));
 	json_put(object, "longest_bank", count(power_up->longest_bank));
 	json_put(object, "lost_states", count(power_up->lost_states));
 	if (power_up->lost_states == 0)
 		return;
 	json_t *loop = json_object();
-	json_put(&loop, "state", count(power_up->second_loop_state));
+	json_put(&loop, "state", state_json(proofs, power_up->second_loop_state));
 	json_put(&loop, "cells", count(power_up->second_loop_cells));
 	json_put(object, "second_loop", loop);
 }
@@ -134,7 +135,7 @@ static json_t *flip_json(const struct proofs *proofs, uint32_t cell, unsigned bi
 {
 	json_t *object = json_object();
 	put_place(&object, proofs->timeline, cell);
-	json_put(&object, "bit", count(bit));
+	json_put_state_bit(&object, proofs, bit);
 	return object;
 }
 
@@ -157,12 +158,43 @@ static json_t *edge_json(const struct proofs *proofs, const struct glitch_edge *
 	json_put(&object, "signal", json_string(plan_of(proofs)->signals[edge->signal].name));
 	json_put(&object, "edges", count(edge->count));
 	put_place(&object, proofs->timeline, edge->cell);
-	json_put(&object, "from_state", count(edge->from_state));
-	json_put(&object, "to_state", count(edge->to_state));
+	json_put(&object, "from_state", state_json(proofs, edge->from_state));
+	json_put(&object, "to_state", state_json(proofs, edge->to_state));
 	json_put(&object, "from_code", count(edge->from_code));
 	json_put(&object, "between_code", count(edge->between_code));
 	json_put(&object, "to_code", count(edge->to_code));
 	return object;
+}
+
+// The state that an async clear passes through, and the direct signals that spike meanwhile.
+static json_t *passing_json(const struct proofs *proofs, enum stage stage)
+{
+	const struct plan *plan = plan_of(proofs);
+	const struct stage_glitches *glitches = &proofs->glitches.stages[stage];
+	json_t *object = json_object(), *pins = json_array();
+	json_put_row_state(&object, proofs, stage, glitches->passing_address);
+	for (size_t signal = 0; signal < plan->signal_count; signal++)
+		if (glitches->passing_pins >> signal & 1)
+			json_append(&pins, json_string(plan->signals[signal].name));
+	json_put(&object, "spikes", pins);
+	return object;
+}
+
+static void put_stage_glitches(json_t **object, const struct proofs *proofs, enum stage stage)
+{
+	const struct stage_glitches *glitches = &proofs->glitches.stages[stage];
+	json_put(object, "direct", truth(glitches->direct));
+	if (glitches->direct) {
+		json_put_time(object, "unsettled", glitches->unsettled_s, UNIT_NANOSECONDS);
+		json_put(object, "unsettled_chip", json_string(glitches->unsettled_part));
+	}
+	json_put(object, "async_clear", truth(glitches->async_clear));
+	if (glitches->async_clear) {
+		json_put_time(object, "clear_unsettled", glitches->clear_unsettled_s, UNIT_NANOSECONDS);
+		json_put(object, "clear_chip", json_string(glitches->clear_part));
+	}
+	if (glitches->passes)
+		json_put(object, "passing", passing_json(proofs, stage));
 }
 
 static void put_glitches(json_t **object, const struct proofs *proofs)
@@ -177,16 +209,12 @@ static void put_glitches(json_t **object, const struct proofs *proofs)
 	json_put(object, "disturbed", disturbed);
 	if (glitches->has_field_signals)
 		json_put_time(object, "settle", glitches->settle_s, UNIT_NANOSECONDS);
-	json_put(object, "direct", truth(glitches->direct));
-	if (glitches->direct) {
-		json_put_time(object, "unsettled", glitches->unsettled_s, UNIT_NANOSECONDS);
-		json_put(object, "unsettled_chip", json_string(glitches->unsettled_part));
-	}
-	json_put(object, "async_clear", truth(glitches->async_clear));
-	if (glitches->async_clear) {
-		json_put_time(object, "clear_unsettled", glitches->clear_unsettled_s, UNIT_NANOSECONDS);
-		json_put(object, "clear_chip", json_string(glitches->clear_part));
-	}
+	put_stage_glitches(object, proofs, STAGE_LINE);
+	if (plan_of(proofs)->machine.form == FORM_LOOP)
+		return;
+	json_t *frame = json_object();
+	put_stage_glitches(&frame, proofs, STAGE_FRAME);
+	json_put(object, "frame", frame);
 }
 
 static json_t *pass_json(const struct proofs *proofs, const struct speed_pass *pass)

@@ -4,6 +4,7 @@
 
 #include "base/text.h"
 #include "view/proofs_shared.h"
+#include "view/states.h"
 
 // Columns: the verdict at 0, the name at 6, the figures at 16. Details stand below the name.
 #define VERDICT_CHARACTERS 4
@@ -75,12 +76,6 @@ static void put_place(struct text *words, const struct timeline *timeline, uint3
 	            place.cell, timeline_region_name(timeline, cell));
 }
 
-static void put_state(struct report *report, uint32_t state)
-{
-	text_put(&report->words, "state ");
-	text_put_hex(&report->words, state, state_bits(report->proofs));
-}
-
 static void put_bank(struct report *report, uint32_t bank)
 {
 	if (report->proofs->banks > 1)
@@ -106,7 +101,7 @@ static void detail_place(struct report *report, const struct counterexample *fou
 	put_bank(report, found->bank);
 	if (!found->byte_known && found->state != NO_STATE) {
 		text_put(&report->words, ", ");
-		put_state(report, found->state);
+		put_row_state(&report->words, report->proofs, found->stage, found->state);
 	}
 	end_detail(report);
 }
@@ -115,7 +110,7 @@ static void detail_place(struct report *report, const struct counterexample *fou
 static void detail_byte(struct report *report, const struct counterexample *found)
 {
 	text_put(&report->words, "row of ");
-	put_state(report, found->state);
+	put_row_state(&report->words, report->proofs, found->stage, found->state);
 	if (found->signal != SIZE_MAX)
 		text_printf(&report->words, ", which sets %s", plan_of(report->proofs)->signals[found->signal].name);
 	text_put(&report->words, ": ");
@@ -161,9 +156,12 @@ static void detail_glitch(struct report *report, const struct glitch_edge *edge)
 	put_place(words, report->proofs->timeline, edge->cell);
 	text_printf(words, " begins: code %" PRIu32 " to %" PRIu32 ", between them %" PRIu32 "; ", edge->from_code, edge->to_code,
 	            edge->between_code);
-	put_state(report, edge->from_state);
+	put_state(words, report->proofs, edge->from_state);
 	text_put(words, " to ");
-	text_put_hex(words, edge->to_state, state_bits(report->proofs));
+	if (plan_of(report->proofs)->machine.form == FORM_LOOP)
+		text_put_hex(words, edge->to_state, state_bits(report->proofs));
+	else
+		put_state(words, report->proofs, edge->to_state);
 	end_detail(report);
 }
 

@@ -197,7 +197,7 @@ static void quiet_loop(void **test)
 	struct proofs *proofs = prove(hand, 0);
 	assert_verdict(proofs, PROOF_GLITCHES, VERDICT_PASS);
 	assert_true(proofs->glitches.has_field_signals);
-	assert_false(proofs->glitches.direct);
+	assert_false(proofs->glitches.stages[STAGE_LINE].direct);
 	assert_int_equal(proofs->glitches.edges, 4);
 	assert_int_equal(proofs->glitches.multi_bit_edges, 0);
 	assert_int_equal(proofs->glitches.disturbed, 0);
@@ -352,7 +352,7 @@ static void decoded_pins_settle(void **test)
 	hand->plan.timing.decoder_delay_s = ratio(38, 1000000000);
 	proofs = prove(hand, 0);
 	assert_ratio(proofs->glitches.settle_s, 89, 1000000000);
-	assert_ratio(proofs->glitches.clear_unsettled_s, 51, 1000000000);
+	assert_ratio(proofs->glitches.stages[STAGE_LINE].clear_unsettled_s, 51, 1000000000);
 	proofs_destroy(proofs);
 	by_hand_destroy(hand);
 }
@@ -384,9 +384,9 @@ static void direct_outputs_settle(void **test)
 	burn_small(hand, small_states);
 	struct proofs *proofs = prove(hand, 0);
 	assert_verdict(proofs, PROOF_GLITCHES, VERDICT_PASS);
-	assert_true(proofs->glitches.direct);
-	assert_ratio(proofs->glitches.unsettled_s, 163, 1000000000);
-	assert_string_equal(proofs->glitches.unsettled_part, "U8");
+	assert_true(proofs->glitches.stages[STAGE_LINE].direct);
+	assert_ratio(proofs->glitches.stages[STAGE_LINE].unsettled_s, 163, 1000000000);
+	assert_string_equal(proofs->glitches.stages[STAGE_LINE].unsettled_part, "U8");
 	proofs_destroy(proofs);
 	by_hand_destroy(hand);
 }
@@ -410,10 +410,10 @@ static void async_clear_settles(void **test)
 	struct proofs *proofs = prove(hand, 0);
 	assert_verdict(proofs, PROOF_SIGNALS, VERDICT_PASS);
 	assert_verdict(proofs, PROOF_GLITCHES, VERDICT_PASS);
-	assert_false(proofs->glitches.direct);
-	assert_true(proofs->glitches.async_clear);
-	assert_ratio(proofs->glitches.clear_unsettled_s, 201, 1000000000);
-	assert_string_equal(proofs->glitches.clear_part, "U8");
+	assert_false(proofs->glitches.stages[STAGE_LINE].direct);
+	assert_true(proofs->glitches.stages[STAGE_LINE].async_clear);
+	assert_ratio(proofs->glitches.stages[STAGE_LINE].clear_unsettled_s, 201, 1000000000);
+	assert_string_equal(proofs->glitches.stages[STAGE_LINE].clear_part, "U8");
 	assert_int_equal(proofs->power_up.cleared_states, 3);
 	proofs_destroy(proofs);
 	by_hand_destroy(hand);

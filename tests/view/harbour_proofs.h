@@ -96,7 +96,7 @@ static inline void harbour_figures(struct proofs *proofs)
 	                                      .mean_cells = {51, 50}, .worst_slip_cells = 50, .worst_slip_lines = {50, 101},
 	                                      .mean_slip_cells = {1, 3}, .worst_slip_cell = 107, .worst_slip_bit = 3};
 	proofs->glitches = (struct glitch_result){.has_field_signals = true, .edges = 26462, .settle_s = {79, 1000000000},
-	                                          .unsettled_s = {0, 1}};
+	                                          .stages[STAGE_LINE].unsettled_s = {0, 1}};
 	// 9 ticks are 99/157500000 s = 11/17500000 s = 628.571 ns; 41 + 150 + 15 + 20 = 226 ns; what is left, 1409/3500000000 s.
 	proofs->speed = (struct speed_result){.cell_s = {11, 17500000}, .available_s = {11, 17500000},
 	                                      .pass_count = 1, .passes[0] = {.has_delay = true, .delay_s = {41, 1000000000},

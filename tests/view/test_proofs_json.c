@@ -174,11 +174,11 @@ static void direct_outputs_are_unsettled(void **state)
 	struct harbour harbour;
 	harbour_fill(&harbour);
 	struct glitch_result *glitches = &harbour.proofs.glitches;
-	*glitches = (struct glitch_result){.direct = true, .unsettled_s = {191, 1000000000}, .unsettled_part = "rom1"};
+	*glitches = (struct glitch_result){.stages[STAGE_LINE] = {.direct = true, .unsettled_s = {191, 1000000000}, .unsettled_part = "rom1"}};
 	assert_proof(&harbour, PROOF_GLITCHES,
 		"{'verdict':'pass','must':false,'decoded':false,'edges':0,'multi_bit_edges':0,'disturbed':[],'direct':true,"
 		"'unsettled_s':'191/1000000000','unsettled_ns':191.0,'unsettled_chip':'rom1','async_clear':false}");
-	*glitches = (struct glitch_result){.async_clear = true, .clear_unsettled_s = {201, 1000000000}, .clear_part = "rom0"};
+	*glitches = (struct glitch_result){.stages[STAGE_LINE] = {.async_clear = true, .clear_unsettled_s = {201, 1000000000}, .clear_part = "rom0"}};
 	assert_proof(&harbour, PROOF_GLITCHES,
 		"{'verdict':'pass','must':false,'decoded':false,'edges':0,'multi_bit_edges':0,'disturbed':[],'direct':false,"
 		"'async_clear':true,'clear_unsettled_s':'201/1000000000','clear_unsettled_ns':201.0,'clear_chip':'rom0'}");

@@ -367,16 +367,16 @@ static void direct_outputs_are_unsettled(void **state)
 	harbour_fill(&harbour);
 	struct glitch_result *glitches = &harbour.proofs.glitches;
 	glitches->has_field_signals = false;
-	glitches->direct = true;
-	glitches->unsettled_s = (struct fraction){191, 1000000000};
-	glitches->unsettled_part = "rom1";
+	glitches->stages[STAGE_LINE].direct = true;
+	glitches->stages[STAGE_LINE].unsettled_s = (struct fraction){191, 1000000000};
+	glitches->stages[STAGE_LINE].unsettled_part = "rom1";
 	assert_proof(&harbour, PROOF_GLITCHES,
 		"pass  glitches  no signal is decoded from the state; the data outputs are taken straight from the\n"
 		"                EEPROMs and are unsettled for 191 ns after each edge (rom1)\n");
-	glitches->direct = false;
-	glitches->async_clear = true;
-	glitches->clear_unsettled_s = (struct fraction){201, 1000000000};
-	glitches->clear_part = "rom0";
+	glitches->stages[STAGE_LINE].direct = false;
+	glitches->stages[STAGE_LINE].async_clear = true;
+	glitches->stages[STAGE_LINE].clear_unsettled_s = (struct fraction){201, 1000000000};
+	glitches->stages[STAGE_LINE].clear_part = "rom0";
 	assert_proof(&harbour, PROOF_GLITCHES,
 		"pass  glitches  no signal is decoded from the state; clear is taken straight from rom0 into an\n"
 		"                asynchronous pin and is unsettled for 201 ns after each edge, when a spike on it\n"
@@ -395,9 +395,9 @@ static void decoded_pins_settle_later_after_an_async_clear(void **state)
 	assert_proof(&harbour, PROOF_GLITCHES,
 		"pass  glitches  26462 cell edges, 0 with more than one bit of a decoded field changing; no decoded\n"
 		"                signal can flicker; decoded pins settle after 88 ns (counter 50 + decoder 38)\n");
-	glitches->async_clear = true;
-	glitches->clear_unsettled_s = (struct fraction){201, 1000000000};
-	glitches->clear_part = "rom0";
+	glitches->stages[STAGE_LINE].async_clear = true;
+	glitches->stages[STAGE_LINE].clear_unsettled_s = (struct fraction){201, 1000000000};
+	glitches->stages[STAGE_LINE].clear_part = "rom0";
 	assert_proof(&harbour, PROOF_GLITCHES,
 		"pass  glitches  26462 cell edges, 0 with more than one bit of a decoded field changing; no decoded\n"
 		"                signal can flicker; decoded pins settle after 88 ns (counter 50 + decoder 38), 201\n"
