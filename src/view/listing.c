@@ -126,7 +126,7 @@ static void put_spare(struct text *out, const struct table *table, const struct 
 		return;
 	text_printf(out, "# the %u states that are not on the frame have this row:\nspare ", (unsigned)(states - table->period));
 	put_state(out, plan, spare);
-	put_row(out, table, &table->spare);
+	put_row(out, table, &table->spare[STAGE_LINE]);
 	put_chips(out, plan, images, spare);
 }
 
@@ -140,7 +140,7 @@ void view_listing(struct text *out, const struct table *table, const struct imag
 		const struct laid_line *type = &timeline->types[line->type];
 		for (uint32_t cell = 0; cell < type->cells; cell++) {
 			const uint32_t at = (line->first_cell + cell) % table->period;
-			const struct row row = table_row(table, at);
+			const struct row row = table_row(table, STAGE_LINE, at);
 			text_printf(out, "\"%s\" %u %u \"%s\" ", plan->lines[line->type].name, (unsigned)number, (unsigned)cell,
 			            plan->lines[line->type].regions[type->region_of_cell[cell]].name);
 			put_state(out, plan, table->state_of_cell[at]);

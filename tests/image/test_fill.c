@@ -9,6 +9,11 @@
 #define OPEN_DATA {DATA_OPEN, 0}
 #define OPEN_ADDRESS {ADDRESS_OPEN, 0}
 
+static bool fill_alone(const struct table *table, struct arena *arena, struct image *images)
+{
+	return images_fill(&table, 1, arena, images);
+}
+
 // Adds a chip without wires; all pins are open.
 static struct chip *add_chip(struct bench *bench, unsigned address_pins, unsigned data_pins)
 {
@@ -49,7 +54,7 @@ static void test_straight(void **state)
 			   NEXT(0), NEXT(1), {DATA_SIGNAL, 0}, OPEN_DATA, OPEN_DATA, OPEN_DATA, OPEN_DATA, {DATA_SIGNAL, 1}},
 	       8 * sizeof *chip->data);
 	struct image image;
-	assert_true(images_fill(bench_table(bench), bench->arena, &image));
+	assert_true(fill_alone(bench_table(bench), bench->arena, &image));
 	const uint8_t expected[] = {
 		0x7D,                   // state 0: next 01, of cell 1: sync high (1 << 2), blank low; D3 to D6 open: 1
 		0x7E,                   // state 1: next 10, of cell 2: sync high, blank low
@@ -79,7 +84,7 @@ static void test_scrambled(void **state)
 	right->data[0] = (struct data_wire){DATA_SIGNAL, 0};
 	right->data[7] = (struct data_wire)NEXT(1);
 	struct image images[2];
-	assert_true(images_fill(bench_table(bench), bench->arena, images));
+	assert_true(fill_alone(bench_table(bench), bench->arena, images));
 	// Left: D6 next.0, D1 blank, the other six 1: 0xBD | next.0 << 6 | blank << 1. State 0: next 01, blank 0: 0xFD.
 	// State 1: next 10, blank 0: 0xBD. State 2: next 11, blank 1: 0xFF. State 3: next 00, blank 1: 0xBF. Address: A0 is
 	// state.1, A2 is state.0.
@@ -117,7 +122,7 @@ static void test_sixteen_bits(void **state)
 		if (pin % 8 != 0 && pin != 15 && pin != 4)
 			chip->data[pin] = (struct data_wire)OPEN_DATA;
 	struct image image;
-	assert_true(images_fill(bench_table(bench), bench->arena, &image));
+	assert_true(fill_alone(bench_table(bench), bench->arena, &image));
 	// Low byte 0xEE | next.1 | blank << 4, high byte 0x7E | next.0 | sync << 7.
 	const uint8_t expected[] = {
 		0xEE, 0xFF,                                     // state 0: next 01, sync 1, blank 0
@@ -145,7 +150,7 @@ static void test_sixteen_bits_straight(void **state)
 		if (pin != 8 && pin != 9)
 			chip->data[pin] = (struct data_wire)OPEN_DATA;
 	struct image image;
-	assert_true(images_fill(bench_table(bench), bench->arena, &image));
+	assert_true(fill_alone(bench_table(bench), bench->arena, &image));
 	const uint8_t expected[] = {
 		0xFD, 0xFD, // state 0: next 01; sync 1, blank 0
 		0xFE, 0xFD, // state 1: next 10
@@ -174,7 +179,7 @@ static void test_counter(void **state)
 		chip->data[0] = (struct data_wire){DATA_SIGNAL, 0};
 		chip->data[7] = (struct data_wire){DATA_CLEAR, 0};
 		struct image image;
-		assert_true(images_fill(bench_table(bench), bench->arena, &image));
+		assert_true(fill_alone(bench_table(bench), bench->arena, &image));
 		const uint8_t expected[] = {
 			0x7E,                              // state 0: cell 1 is no sync
 			0x7F,                              // state 1: cell 2 is
@@ -204,7 +209,7 @@ static void test_spare_rows(void **state)
 	memcpy(chip->data, (const struct data_wire[]){NEXT(0), NEXT(1), {DATA_SIGNAL, 0}, {DATA_SIGNAL, 1}},
 	       4 * sizeof *chip->data);
 	struct image image;
-	assert_true(images_fill(bench_table(bench), bench->arena, &image));
+	assert_true(fill_alone(bench_table(bench), bench->arena, &image));
 	const uint8_t expected[] = {
 		0xF6, // state 0, the picture: next 10, sync high, blank low
 		0xFE, // state 1, spare: next 10, sync high, blank high
@@ -218,10 +223,10 @@ static void test_spare_rows(void **state)
 // What one data pin of a chip holds at a state, bit by bit.
 static unsigned pin_level(const struct table *table, const struct data_wire wire, uint32_t state)
 {
-	struct row row = table->spare;
+	struct row row = table_spare(table, STAGE_LINE, 0);
 	for (uint32_t cell = 0; cell < table->period; cell++)
 		if (table->state_of_cell[cell] == state)
-			row = table_row(table, cell);
+			row = table_row(table, STAGE_LINE, cell);
 	if (wire.kind == DATA_NEXT)
 		return row.next >> wire.index & 1;
 	if (wire.kind == DATA_SIGNAL)
@@ -259,7 +264,7 @@ static void test_random_wires(void **state)
 	}
 	struct image images[2];
 	const struct table *table = bench_table(bench);
-	assert_true(images_fill(table, bench->arena, images));
+	assert_true(fill_alone(table, bench->arena, images));
 	for (unsigned index = 0; index < 2; index++) {
 		const struct chip *chip = &bench->chips[index];
 		const unsigned width = chip->part->data_pins / 8;

@@ -63,7 +63,7 @@ static void fill_bench(struct bench *bench)
 	bench->images[0] = (struct image){.bytes = bench->narrow_bytes, .length = 4};
 	bench->images[1] = (struct image){.bytes = bench->wide_bytes, .length = 8};
 	bench->table = (struct table){.timeline = &bench->timeline, .wiring = wiring_of(&bench->plan), .period = 2,
-	                              .state_of_cell = bench->states, .pins = bench->pins, .spare = {.next = 1, .levels = 0}};
+	                              .state_of_cell = bench->states, .pins = bench->pins, .spare = {{.next = 1, .levels = 0}}};
 }
 
 // Registered: row 1 (cell 0) holds sync of cell 1, not asserted and so high; row 2 that of cell 0, low.
