@@ -105,8 +105,9 @@ static void read_root(struct reader *reader, const struct node *root)
 		read_machine(reader, values[PLAN_MACHINE]);
 	if (values[PLAN_SIGNALS] != NULL)
 		read_signals(reader, values[PLAN_SIGNALS]);
-	if (values[PLAN_LINES] != NULL && !reader->line_frame)
+	if (values[PLAN_LINES] != NULL)
 		read_lines(reader, values[PLAN_LINES]);
+	settle_kinds(reader);
 	if (values[PLAN_FRAME] != NULL && plan->line_count > 0)
 		read_frame(reader, values[PLAN_FRAME]);
 	if (values[PLAN_PARTS] != NULL)
