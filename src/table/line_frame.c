@@ -53,6 +53,11 @@ static uint32_t states_needed(const struct stage_wiring *wiring, uint32_t count)
 	return count + clears_at_once(wiring);
 }
 
+static const char *plural(uint32_t count)
+{
+	return count == 1 ? "" : "s";
+}
+
 static const char *passing_words(const struct stage_wiring *wiring)
 {
 	return clears_at_once(wiring) ? ", one of them to clear the counter in" : "";
@@ -68,12 +73,12 @@ static bool check_line_bits(const struct table *table, struct diagnostics *diagn
 		return true;
 	if (wiring->advance == ADVANCE_TABLE)
 		diagnose(diagnostics, RULE_STATES_SHORT, plan->machine.line.place,
-		         "line type \"%s\" needs %u states, one for each cell, but %u bits of state of the line stage have %u",
-		         plan->lines[type].name, needed, wiring->state_bits, states);
+		         "line type \"%s\" needs %u states, one for each cell, but %u bit%s of state of the line stage have %u",
+		         plan->lines[type].name, needed, wiring->state_bits, plural(wiring->state_bits), states);
 	else
 		diagnose(diagnostics, RULE_COUNTER_SHORT, plan->machine.line.place,
-		         "line type \"%s\" needs %u states%s, but the line stage's counter of %u bits has %u", plan->lines[type].name,
-		         needed, passing_words(wiring), wiring->state_bits, states);
+		         "line type \"%s\" needs %u states%s, but the line stage's counter of %u bit%s has %u", plan->lines[type].name,
+		         needed, passing_words(wiring), wiring->state_bits, plural(wiring->state_bits), states);
 	hint_bits(table, STAGE_LINE, needed, diagnostics);
 	return false;
 }
@@ -88,12 +93,12 @@ static bool check_frame_bits(const struct table *table, struct diagnostics *diag
 		return true;
 	if (wiring->advance == ADVANCE_TABLE)
 		diagnose(diagnostics, RULE_STATES_SHORT, machine->frame.place,
-		         "the frame has %u lines, each of which needs a state, but %u bits of state of the frame stage have %u", lines,
-		         wiring->state_bits, states);
+		         "the frame has %u lines, each of which needs a state, but %u bit%s of state of the frame stage have %u", lines,
+		         wiring->state_bits, plural(wiring->state_bits), states);
 	else
 		diagnose(diagnostics, RULE_COUNTER_SHORT, machine->frame.place,
-		         "the frame has %u lines and needs %u states%s, but the frame stage's counter of %u bits has %u", lines, needed,
-		         passing_words(wiring), wiring->state_bits, states);
+		         "the frame has %u lines and needs %u states%s, but the frame stage's counter of %u bit%s has %u", lines, needed,
+		         passing_words(wiring), wiring->state_bits, plural(wiring->state_bits), states);
 	hint_bits(table, STAGE_FRAME, needed, diagnostics);
 	return false;
 }
@@ -119,6 +124,26 @@ static bool check_lengths(const struct table *table, struct diagnostics *diagnos
 	return true;
 }
 
+// A latched step that ends a line of one cell comes from the line before. Without it the machine would stay in the line, unless
+// all lines have one cell, so that every row holds a step.
+static bool check_single_cells(const struct table *table, struct diagnostics *diagnostics)
+{
+	const struct timeline *timeline = table->timeline;
+	bool good = true;
+	if (table->wiring.line.outputs == OUTPUTS_DIRECT || timeline->types[longest_type(table)].cells == 1)
+		return true;
+	for (size_t type = 0; type < timeline->plan->line_count; type++) {
+		if (table->line_of_type[type] == NO_LINE || timeline->types[type].cells > 1)
+			continue;
+		diagnose(diagnostics, RULE_LINE_SINGLE, timeline->plan->lines[type].place,
+		         "line type \"%s\" has one cell, beside longer lines: the step that ends it would be latched in the line before, and a "
+		         "machine that powers up in it without that never leaves it", timeline->plan->lines[type].name);
+		diagnose_hint(diagnostics, "give it two cells, or give the line stage outputs: direct");
+		good = false;
+	}
+	return good;
+}
+
 bool line_frame_fill(struct table *table, struct arena *scratch, struct diagnostics *diagnostics)
 {
 	bool fields_agree = false;
@@ -127,6 +152,7 @@ bool line_frame_fill(struct table *table, struct arena *scratch, struct diagnost
 	bool good = check_line_bits(table, diagnostics);
 	good = check_frame_bits(table, diagnostics) && good;
 	good = check_lengths(table, diagnostics) && good;
+	good = check_single_cells(table, diagnostics) && good;
 	const bool agrees = look_ahead_check(table, scratch, diagnostics, &fields_agree);
 	return good && fields_agree && line_states_choose(table, scratch, diagnostics) && agrees;
 }

@@ -2,14 +2,12 @@
 #include "base/arena.h"
 #include "table/line_frame.h"
 
-#define REPORTS 200      // so many are put into words
-#define STEP SIZE_MAX    // stands for the word's bit `step` where a signal's index is wanted
+#define REPORTS 200 // so many are put into words
 
 struct comparison {
 	const struct table *table;
 	struct diagnostics *diagnostics;
 	uint64_t *reported;      // [line types]: signals that need no second report
-	bool *step_reported;     // [line types]
 	unsigned reports;
 	bool fields_agree;
 };
@@ -18,7 +16,7 @@ struct comparison {
 struct difference {
 	uint32_t left, right; // lines of the frame
 	uint32_t cell;
-	size_t signal;        // or STEP
+	size_t signal;
 	int64_t ahead;        // how many cells after this one the row, or the state, shows
 };
 
@@ -39,15 +37,9 @@ static uint32_t cell_ahead(const struct timeline *timeline, uint32_t line, uint3
 	return (uint32_t)(((timeline->lines[line].first_cell + cell + ahead) % count + count) % count);
 }
 
-static bool ends_line(const struct timeline *timeline, uint32_t cell)
-{
-	const struct cell_place place = timeline_place(timeline, cell);
-	return place.cell + 1 == timeline->types[timeline->lines[place.line].type].cells;
-}
-
 static bool asserted_at(const struct timeline *timeline, uint32_t cell, size_t signal)
 {
-	return signal == STEP ? ends_line(timeline, cell) : (timeline->asserted[cell] >> signal & 1) != 0;
+	return (timeline->asserted[cell] >> signal & 1) != 0;
 }
 
 // True if with `ahead` all lines of a type have the same levels of a signal for each of their cells.
@@ -82,9 +74,7 @@ static void hint_remedies(const struct comparison *comparison, const struct diff
 	const char *outputs = registered ? "direct" : "registered";
 	const bool helps = is_data && would_agree(timeline, difference->left, difference->signal, other);
 	const char *alike = difference->ahead > 0 ? "what follows them begins" : "what comes before them ends";
-	if (difference->signal == STEP)
-		diagnose_hint(comparison->diagnostics, "make lines of two cells and more%s", helps ? ", or give the line stage outputs: direct" : "");
-	else if (helps)
+	if (helps)
 		diagnose_hint(comparison->diagnostics, "start the lines elsewhere, say in the front porch, so that %s alike, or give the line stage outputs: %s",
 		              alike, outputs);
 	else
@@ -102,7 +92,7 @@ static void report(struct comparison *comparison, const struct difference *diffe
 	const struct timeline *timeline = timeline_of(comparison);
 	const struct plan *plan = timeline->plan;
 	const struct line_type *type = &plan->lines[timeline->lines[difference->left].type];
-	const bool is_data = difference->signal == STEP || signal_is_data(&plan->signals[difference->signal]);
+	const bool is_data = signal_is_data(&plan->signals[difference->signal]);
 	const uint32_t left = cell_ahead(timeline, difference->left, difference->cell, difference->ahead);
 	const uint32_t right = cell_ahead(timeline, difference->right, difference->cell, difference->ahead);
 	const struct cell_place left_place = timeline_place(timeline, left), right_place = timeline_place(timeline, right);
@@ -113,7 +103,7 @@ static void report(struct comparison *comparison, const struct difference *diffe
 	         "line type \"%s\", cell %u: its %s shows \"%s\" as it is %lld cell%s %s, which differs with what %s: %s in line %u "
 	         "(\"%s\"), cell %u, but %s in line %u (\"%s\"), cell %u",
 	         type->name, difference->cell, is_data ? "row" : "state",
-	         difference->signal == STEP ? "step" : plan->signals[difference->signal].name, (long long)distance,
+	         plan->signals[difference->signal].name, (long long)distance,
 	         distance == 1 ? "" : "s", difference->ahead < 0 ? "earlier" : "later",
 	         difference->ahead < 0 ? "comes before" : "follows", asserted_words(asserted_at(timeline, left, difference->signal)),
 	         left_place.line, timeline_line_name(timeline, left), left_place.cell,
@@ -138,19 +128,6 @@ static void report_signals(struct comparison *comparison, struct difference diff
 		difference.ahead = plan->signals[signal].lead_cells + (is_data && is_registered(comparison));
 		report(comparison, &difference);
 	}
-}
-
-// A line of one cell steps in its first: a registered step is then held by the last row of the line before.
-static void compare_steps(struct comparison *comparison, uint32_t left, uint32_t right)
-{
-	const struct timeline *timeline = timeline_of(comparison);
-	const uint32_t type = timeline->lines[left].type, last = timeline->types[type].cells - 1;
-	const struct difference difference = {left, right, last, STEP, 1};
-	if (!is_registered(comparison) || comparison->step_reported[type] ||
-	    ends_line(timeline, cell_ahead(timeline, left, last, 1)) == ends_line(timeline, cell_ahead(timeline, right, last, 1)))
-		return;
-	comparison->step_reported[type] = true;
-	report(comparison, &difference);
 }
 
 static uint64_t field_signals(const struct plan *plan)
@@ -180,7 +157,6 @@ static void compare_lines(struct comparison *comparison, uint32_t left, uint32_t
 		comparison->fields_agree = false;
 		report_signals(comparison, difference, in_state, false);
 	}
-	compare_steps(comparison, left, right);
 }
 
 // Reports the frame-stage signals that change at a cell of a line, each once for its line type.
@@ -201,8 +177,8 @@ static void report_changes(struct comparison *comparison, uint32_t line, uint32_
 		         asserted_words(comparison->table->pins[first + cell] >> index & 1), cell, timeline_region_name(timeline, first + cell));
 		diagnose_also(comparison->diagnostics, plan->lines[type].place, "line type \"%s\" is here", plan->lines[type].name);
 		if (signal->lead_cells != 0)
-			diagnose_hint(comparison->diagnostics, "its lead of %lld cells moves its edges away from the lines' ends; leave it out, or give it stage: line",
-			              (long long)signal->lead_cells);
+			diagnose_hint(comparison->diagnostics, "its lead of %lld cell%s moves its edges away from the lines' ends; leave it out, or give it stage: line",
+			              (long long)signal->lead_cells, signal->lead_cells == 1 || signal->lead_cells == -1 ? "" : "s");
 		else
 			diagnose_hint(comparison->diagnostics, "assert it in all regions of the line type or in none, or give it stage: line");
 	}
@@ -225,8 +201,7 @@ bool look_ahead_check(const struct table *table, struct arena *scratch, struct d
 	const uint64_t decoded = field_signals(timeline->plan);
 	struct comparison comparison = {.table = table, .diagnostics = diagnostics, .fields_agree = true};
 	comparison.reported = arena_array(scratch, timeline->plan->line_count, sizeof *comparison.reported);
-	comparison.step_reported = arena_array(scratch, timeline->plan->line_count, sizeof *comparison.step_reported);
-	if (comparison.reported == NULL || comparison.step_reported == NULL) {
+	if (comparison.reported == NULL) {
 		diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){timeline->plan->source, 0, 0}, "memory is out");
 		return false;
 	}

@@ -177,9 +177,9 @@ static void test_too_few_bits(void **state)
 	(void)state;
 	struct drawn *drawn = draw("  line: { state: 1 bit }\n  frame: { state: 1 bit }\n", LINES CHIPS);
 	assert_refused(drawn, RULE_STATES_SHORT, 2);
-	assert_says(drawn, "line type \"pier\" needs 4 states, one for each cell, but 1 bits of state of the line stage have 2");
+	assert_says(drawn, "line type \"pier\" needs 4 states, one for each cell, but 1 bit of state of the line stage have 2");
 	assert_says(drawn, "hint: line: { state: 2 bits } would do");
-	assert_says(drawn, "the frame has 3 lines, each of which needs a state, but 1 bits of state of the frame stage have 2");
+	assert_says(drawn, "the frame has 3 lines, each of which needs a state, but 1 bit of state of the frame stage have 2");
 	assert_says(drawn, "hint: frame: { state: 2 bits } would do");
 	drawn_destroy(drawn);
 	// Three states are not enough for the line's four cells, four just are; with an asynchronous clear it takes five and four.
@@ -192,7 +192,7 @@ static void test_too_few_bits(void **state)
 	drawn = draw("  line: { state: 2 bits, advance: count, clear: sync }\n  frame: { state: 1 bit, advance: count, clear: sync }\n",
 	             LINES CHIPS);
 	assert_refused(drawn, RULE_COUNTER_SHORT, 1);
-	assert_says(drawn, "the frame has 3 lines and needs 3 states, but the frame stage's counter of 1 bits has 2");
+	assert_says(drawn, "the frame has 3 lines and needs 3 states, but the frame stage's counter of 1 bit has 2");
 	drawn_destroy(drawn);
 }
 
