@@ -190,8 +190,9 @@ static void put_spare(const struct stage_view *view, const uint8_t *used, bool u
 	if (count == 0)
 		return;
 	if (view->stage == STAGE_LINE && has_kind(view))
-		text_printf(view->out, used_kinds ? "# the %u states of the frame's kinds that are not on the frame have this row:\nspare " :
-		                                    "# the %u states of all other kinds have this row, which ends the line:\nspare ", (unsigned)count);
+		text_printf(view->out, used_kinds ? "# row of the %u state%s of the frame's kinds that the frame does not use:\nspare " :
+		                                    "# row of the %u state%s of all other kinds, which ends the line:\nspare ",
+		            (unsigned)count, count == 1 ? "" : "s");
 	else
 		text_printf(view->out, "# the %u states that are not on the frame have this row:\nspare ", (unsigned)count);
 	put_row(view, first, table_spare(view->table, view->stage, view->stage == STAGE_LINE ? first >> view->wiring->state_bits : 0));

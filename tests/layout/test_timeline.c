@@ -212,7 +212,7 @@ static void a_cell_knows_its_place(void **state)
 }
 
 // Sync and the stretch signal are asserted in all of line a. Load, a cell early at its pin, is asserted from cell 1 of a to cell
-// 0 of b, and so in all of a there. Mark, two cells late, is never asserted in the first frame and over a in the second.
+// 0 of b, and so in all of a there. Mark, two cells late, is asserted at first nowhere, then over a.
 static void signals_of_whole_lines_suit_the_frame_stage(void **state)
 {
 	(void)state;
@@ -226,7 +226,7 @@ static void signals_of_whole_lines_suit_the_frame_stage(void **state)
 		{"", "", 0xF, 0xD},             // all of them; not the stretch signal, 1
 		{", mark", "", 0x7, 0x5},       // mark changes in the middle of a and of b at its pin
 		{"", "sync, late", 0xC, 0xC},   // sync and late change within b
-		{"", "load", 0xB, 0x9},         // load's pin falls in the last cell of b, where that of a's first is at the pin
+		{"", "load", 0xB, 0x9},         // at its pin load goes off in the last cell of b
 	};
 	for (size_t index = 0; index < sizeof cases / sizeof *cases; index++) {
 		struct laid laid = lay("", arena_format(arena, form, cases[index].marks, cases[index].marks, cases[index].last),

@@ -148,7 +148,7 @@ static void two_stages(void **state)
 		"\"only\" 0 0 \"all\" 0 0  1 0 1  0:10\n"
 		"\"only\" 0 1 \"all\" 1 0  0 1 0  1:12\n"
 		"\"other\" 1 0 \"all\" 0 1  0 1 1  2:11\n"
-		"# the 1 states of the frame's kinds that are not on the frame have this row:\n"
+		"# row of the 1 state of the frame's kinds that the frame does not use:\n"
 		"spare 1 1  0 0 0  3:13\n"
 		"# the frame stage:\n"
 		"# line type, line, state, word (next state, kind, then the levels of gate), then address:word in U2\n"
@@ -167,7 +167,7 @@ static void two_stages(void **state)
 	view_listing(&text, &bench.table, bench.images);
 	assert_non_null(strstr(text_string(&text), "state, kind, word (step, clear, then the levels of sync), then"));
 	assert_non_null(strstr(text_string(&text), "\"only\" 0 1 \"all\" 1 0  1 1 0  0:10\n"));
-	assert_non_null(strstr(text_string(&text), "# the 4 states of all other kinds have this row, which ends the line:\nspare 0 2  1 0 0  2:11\n"));
+	assert_non_null(strstr(text_string(&text), "# row of the 4 states of all other kinds, which ends the line:\nspare 0 2  1 0 0  2:11\n"));
 	assert_non_null(strstr(text_string(&text), "state, word (kind, clear, then the levels of gate), then"));
 	assert_non_null(strstr(text_string(&text), "\"other\" 1 1  0 1 0  1:A121\n"));
 	text_release(&text);
