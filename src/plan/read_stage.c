@@ -127,6 +127,8 @@ static bool check_address_bits(struct reader *reader)
 	diagnose(reader->diagnostics, RULE_MACHINE_SIZE, reader->kind != NULL ? reader->kind->place : machine->line.place,
 	         "state and kind address the line stage by %u bits (%u and %u), wanted at most %d", bits, machine->line.state_bits,
 	         machine->kind_bits, LIMIT_STATE_BITS);
+	if (reader->kind != NULL)
+		diagnose_hint(reader->diagnostics, "leave kind out: it then has as many bits as the line types need");
 	return false;
 }
 

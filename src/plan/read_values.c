@@ -106,7 +106,7 @@ bool report_elsewhere(struct reader *reader, const struct node *node, const char
 	for (size_t pair = 0; node->kind == NODE_MAPPING && pair < node->count; pair++)
 		for (size_t stray = 0; stray < count; stray++) {
 			const struct node *key = node->pairs[pair].key;
-			if (strcmp(key->text, strays[stray].name) != 0 || strays[stray].hint == told)
+			if (strcmp(key->text, strays[stray].name) != 0 || (told != NULL && strcmp(strays[stray].hint, told) == 0))
 				continue;
 			told = strays[stray].hint;
 			diagnose(reader->diagnostics, RULE_UNKNOWN_KEY, key->place, "%s has no key \"%s\"", what, key->text);
