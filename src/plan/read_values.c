@@ -269,6 +269,20 @@ bool read_quantity(struct reader *reader, const struct node *node, const char *w
 	return false;
 }
 
+bool read_bit_count(struct reader *reader, const struct node *node, const char *what, int64_t least, int64_t most, unsigned *bits)
+{
+	struct quantity quantity;
+	if (!read_quantity(reader, node, what, 1u << DIMENSION_BITS, &quantity))
+		return false;
+	if (!fraction_is_whole(quantity.value) || quantity.value.numerator < least || quantity.value.numerator > most) {
+		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "%s: wanted %lld to %lld bits, found \"%s\"", what,
+		         (long long)least, (long long)most, node->text);
+		return false;
+	}
+	*bits = (unsigned)quantity.value.numerator;
+	return true;
+}
+
 bool read_time(struct reader *reader, const struct node *node, const char *what, bool positive, struct fraction *seconds)
 {
 	struct quantity quantity;
