@@ -51,7 +51,8 @@ struct plan *plan_read_for_set(const struct source *source, const struct catalog
                                struct diagnostics *diagnostics);
 
 // True if the plans of a set's listed banks (bank_count of them, in that order) agree on the form of the machine, its stages and
-// words, the signals decoded from fields, the chips and their wiring. The first difference of each plan from bank 0's is reported.
+// words, the signals decoded from fields, the chips and their wiring. The codes that the planner chooses for codes: auto are not known
+// here: where both plans have it, they may still come out different. The first difference of each plan from bank 0's is reported.
 bool set_plans_agree(const struct set *set, const struct plan *const *plans, struct diagnostics *diagnostics);
 
 #endif
