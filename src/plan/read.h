@@ -6,6 +6,7 @@
 #include "plan/document.h"
 #include "plan/plan.h"
 #include "plan/quantity.h"
+#include "plan/set.h"
 
 struct reader {
 	struct arena *arena;
@@ -18,7 +19,9 @@ struct reader {
 	bool signals_known;  // every signal was read without errors: the data signals are known
 	bool words_known;    // each stage's state, kind and way to advance are known: with the signals, so is its word
 	const struct node *kind;       // of a line-frame machine; NULL if the plan does not say it
-	unsigned set_bits;             // bank bits of the set that the plan is of; 0 if it is of none
+	const struct set *set;         // that the plan is of; NULL if it is of none
+	size_t bank;                   // of the set's listed banks
+	unsigned set_bits;             // its ; 0 without a set
 	const struct part *own_parts;  // of `parts:`
 	size_t own_part_count;
 	size_t region_count;           // over all line types, kept within LIMIT_REGIONS
@@ -72,6 +75,8 @@ bool read_choice(struct reader *reader, const struct node *node, const char *wha
 bool read_stage_word(struct reader *reader, const struct node *node, enum stage *result);
 // A quantity of one of the dimensions whose bits (1u << dimension) are in `allowed`.
 bool read_quantity(struct reader *reader, const struct node *node, const char *what, unsigned allowed, struct quantity *result);
+// A number of bits from `least` to `most`.
+bool read_bit_count(struct reader *reader, const struct node *node, const char *what, int64_t least, int64_t most, unsigned *bits);
 // A time in seconds; `positive`: zero is an error. Never negative.
 bool read_time(struct reader *reader, const struct node *node, const char *what, bool positive, struct fraction *seconds);
 // A bit range within a word of `bits` bits.
@@ -90,6 +95,18 @@ void hint_words(struct reader *reader, const char *word, const char *const *cand
 
 // An array in the plan's arena; reports and returns NULL when memory is out.
 void *reader_array(struct reader *reader, size_t count, size_t size);
+
+// What plans and sets have in common. The version is 1; `what` is its key.
+void read_version(struct reader *reader, const struct node *node, const char *what);
+// A name that begins file names; false after reporting.
+bool read_file_stem(struct reader *reader, const struct node *node, const char **name);
+// The note, "" where the node is NULL or wrong.
+const char *read_note(struct reader *reader, const struct node *node);
+// True if a document is a set. Cannot fail.
+bool node_is_set(const struct node *root);
+// A path without its folders, printable as messages have it: a file's name may be any bytes, but JSON is UTF-8 (RFC 8259, section 8.1).
+// In the arena; NULL when memory is out.
+const char *printable_base_name(struct arena *arena, const char *path);
 
 // The parts of a plan. Each reports its errors and leaves defaults where it found any.
 void read_clock(struct reader *reader, const struct node *node);

@@ -64,21 +64,8 @@ static bool read_straight(struct reader *reader, const struct node *node, const 
 	return true;
 }
 
-static bool check_straight_count(struct reader *reader, const struct node *node, const struct straight *line,
-                                 const struct straight *frame)
-{
-	if (line->count + frame->count <= LIMIT_CHIPS)
-		return true;
-	if (reader->plan->machine.form == FORM_LOOP)
-		diagnose(reader->diagnostics, RULE_TOO_MANY_CHIPS, node->place,
-		         "a word of %zu bits needs %zu chips of part %s, wanted at most %d", line->bits, line->count, line->part->name, LIMIT_CHIPS);
-	else
-		diagnose(reader->diagnostics, RULE_TOO_MANY_CHIPS, node->place,
-		         "the line stage's word of %zu bits needs %zu chips of part %s, the frame stage's of %zu bits %zu of part %s,"
-		         " wanted at most %d in all", line->bits, line->count, line->part->name, frame->bits, frame->count, frame->part->name,
-		         LIMIT_CHIPS);
-	return false;
-}
+_Static_assert((LIMIT_FEEDBACK_BITS + LIMIT_KIND_BITS + 3 + LIMIT_SIGNALS + 2 * 7) / 8 <= LIMIT_CHIPS,
+               "the words of both stages are never too long for the chips of the short form");
 
 // Wires a stage's chips straight, from chip `first` on.
 static void wire_straight(struct reader *reader, const struct straight *straight, enum stage stage, size_t first)
@@ -100,12 +87,9 @@ static void wire_straight(struct reader *reader, const struct straight *straight
 	}
 }
 
-static void wire_all_straight(struct reader *reader, const struct node *node, const struct straight *line,
-                              const struct straight *frame)
+static void wire_all_straight(struct reader *reader, const struct straight *line, const struct straight *frame)
 {
 	struct plan *plan = reader->plan;
-	if (!check_straight_count(reader, node, line, frame))
-		return;
 	plan->chips = reader_array(reader, line->count + frame->count, sizeof *plan->chips);
 	if (plan->chips == NULL)
 		return;
@@ -123,14 +107,14 @@ static void read_loop_chips(struct reader *reader, const struct node *node)
 	report_elsewhere(reader, node, "the short form of chips for a loop machine", loop_strays, COUNT_OF(loop_strays));
 	if (read_mapping(reader, node, "chips", part_and_speed_keys, SHORT_KEYS, values) &&
 	    read_straight(reader, node, values[SHORT_PART], values[SHORT_SPEED], STAGE_LINE, &line))
-		wire_all_straight(reader, node, &line, &frame);
+		wire_all_straight(reader, &line, &frame);
 }
 
 // Reads the chips of one stage of two. False if they cannot be wired.
 static bool read_stage_chips(struct reader *reader, const struct node *node, enum stage stage, struct straight *straight)
 {
 	const struct node *values[SHORT_KEYS];
-	const char *what = stage == STAGE_LINE ? "the line stage's chips" : "the frame stage's chips";
+	const char *what = stage == STAGE_LINE ? "\"line\" of chips" : "\"frame\" of chips";
 	const size_t count = SHORT_SPEED + 1; // no stages within a stage
 	return node != NULL && read_mapping(reader, node, what, part_and_speed_keys, count, values) &&
 	       read_straight(reader, node, values[SHORT_PART], values[SHORT_SPEED], stage, straight);
@@ -146,7 +130,7 @@ static void read_line_frame_chips(struct reader *reader, const struct node *node
 	const bool line_good = read_stage_chips(reader, values[SHORT_LINE], STAGE_LINE, &line);
 	const bool frame_good = read_stage_chips(reader, values[SHORT_FRAME], STAGE_FRAME, &frame);
 	if (line_good && frame_good)
-		wire_all_straight(reader, node, &line, &frame);
+		wire_all_straight(reader, &line, &frame);
 }
 
 static bool read_label(struct reader *reader, const struct node *node, struct chip *chip, size_t index)

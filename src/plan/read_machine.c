@@ -108,15 +108,18 @@ static bool read_form(struct reader *reader, const struct node *node)
 static bool read_nodes(struct reader *reader, const struct node *node, const struct node **values, struct stage_nodes *line,
                        struct stage_nodes *frame)
 {
+	const bool is_said = node->kind == NODE_MAPPING && node_value(node, "form") != NULL;
 	if (reader->plan->machine.form == FORM_LOOP) {
-		report_elsewhere(reader, node, "a loop machine", loop_strays, COUNT_OF(loop_strays));
-		if (!read_mapping(reader, node, "a loop machine", loop_keys, MACHINE_KEYS, values))
+		const char *what = is_said ? "a loop machine" : "a machine";
+		report_elsewhere(reader, node, what, loop_strays, COUNT_OF(loop_strays));
+		if (!read_mapping(reader, node, what, loop_keys, MACHINE_KEYS, values))
 			return false;
 		*line = (struct stage_nodes){values[MACHINE_STATE], values[MACHINE_OUTPUTS], values[MACHINE_ADVANCE], values[MACHINE_CLEAR]};
 		return true;
 	}
-	report_elsewhere(reader, node, "a line-frame machine", line_frame_strays, COUNT_OF(line_frame_strays));
-	if (!read_mapping(reader, node, "a line-frame machine", line_frame_keys, MACHINE_KEYS, values))
+	const char *what = is_said ? "a line-frame machine" : "a machine";
+	report_elsewhere(reader, node, what, line_frame_strays, COUNT_OF(line_frame_strays));
+	if (!read_mapping(reader, node, what, line_frame_keys, MACHINE_KEYS, values))
 		return false;
 	if (values[MACHINE_LINE] != NULL)
 		read_stage_nodes(reader, values[MACHINE_LINE], STAGE_LINE, line);

@@ -180,8 +180,10 @@ static void put_address_bits(struct text *text, const struct reader *reader, enu
 		text_printf(text, "the state has %u bits", bits);
 		return;
 	}
-	text_printf(text, "%s is addressed by %u bits (state %u",
-	            machine->form == FORM_LOOP ? "it" : stage == STAGE_LINE ? "the line stage" : "the frame stage", bits, state);
+	if (machine->form == FORM_LOOP)
+		text_printf(text, "the address has %u bits (state %u", bits, state);
+	else
+		text_printf(text, "the %s stage is addressed by %u bits (state %u", stage_name(stage), bits, state);
 	if (stage == STAGE_LINE && machine->kind_bits > 0)
 		text_printf(text, ", kind %u", machine->kind_bits);
 	if (reader->set_bits > 0)

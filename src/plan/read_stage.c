@@ -35,22 +35,6 @@ void read_stage_nodes(struct reader *reader, const struct node *node, enum stage
 		*nodes = (struct stage_nodes){values[STAGED_STATE], values[STAGED_OUTPUTS], values[STAGED_ADVANCE], values[STAGED_CLEAR]};
 }
 
-// Reads a number of bits from `least` to `most`. False after reporting.
-static bool read_bit_count(struct reader *reader, const struct node *node, const char *what, int64_t least, int64_t most,
-                           unsigned *bits)
-{
-	struct quantity quantity;
-	if (!read_quantity(reader, node, what, 1u << DIMENSION_BITS, &quantity))
-		return false;
-	if (!fraction_is_whole(quantity.value) || quantity.value.numerator < least || quantity.value.numerator > most) {
-		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "%s: wanted %lld to %lld bits, found \"%s\"", what,
-		         (long long)least, (long long)most, node->text);
-		return false;
-	}
-	*bits = (unsigned)quantity.value.numerator;
-	return true;
-}
-
 void read_state_bits(struct reader *reader, const struct node *node, struct stage_plan *stage)
 {
 	if (node == NULL)
@@ -127,6 +111,8 @@ static bool check_address_bits(struct reader *reader)
 	diagnose(reader->diagnostics, RULE_MACHINE_SIZE, reader->kind != NULL ? reader->kind->place : machine->line.place,
 	         "state and kind address the line stage by %u bits (%u and %u), wanted at most %d", bits, machine->line.state_bits,
 	         machine->kind_bits, LIMIT_STATE_BITS);
+	if (reader->kind != NULL)
+		diagnose_hint(reader->diagnostics, "leave kind out: it then has as many bits as the line types need");
 	return false;
 }
 

@@ -106,7 +106,7 @@ bool report_elsewhere(struct reader *reader, const struct node *node, const char
 	for (size_t pair = 0; node->kind == NODE_MAPPING && pair < node->count; pair++)
 		for (size_t stray = 0; stray < count; stray++) {
 			const struct node *key = node->pairs[pair].key;
-			if (strcmp(key->text, strays[stray].name) != 0 || strays[stray].hint == told)
+			if (strcmp(key->text, strays[stray].name) != 0 || (told != NULL && strcmp(strays[stray].hint, told) == 0))
 				continue;
 			told = strays[stray].hint;
 			diagnose(reader->diagnostics, RULE_UNKNOWN_KEY, key->place, "%s has no key \"%s\"", what, key->text);
@@ -267,6 +267,20 @@ bool read_quantity(struct reader *reader, const struct node *node, const char *w
 		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: \"%s\" has a unit that does not fit here", what, text);
 	hint_quantity(reader, text, status, allowed);
 	return false;
+}
+
+bool read_bit_count(struct reader *reader, const struct node *node, const char *what, int64_t least, int64_t most, unsigned *bits)
+{
+	struct quantity quantity;
+	if (!read_quantity(reader, node, what, 1u << DIMENSION_BITS, &quantity))
+		return false;
+	if (!fraction_is_whole(quantity.value) || quantity.value.numerator < least || quantity.value.numerator > most) {
+		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "%s: wanted %lld to %lld bits, found \"%s\"", what,
+		         (long long)least, (long long)most, node->text);
+		return false;
+	}
+	*bits = (unsigned)quantity.value.numerator;
+	return true;
 }
 
 bool read_time(struct reader *reader, const struct node *node, const char *what, bool positive, struct fraction *seconds)

@@ -73,14 +73,25 @@ static void hint_wires(struct reader *reader, enum stage stage, bool is_address)
 {
 	const struct machine_plan *machine = &reader->plan->machine;
 	const bool loop = machine->form == FORM_LOOP, counts = machine_stage(machine, stage)->advance == ADVANCE_COUNT;
-	if (is_address)
+	const char *words[3], *kind = machine->kind_bits > 0 ? "kind.N" : NULL;
+	size_t count = 0;
+	if (is_address) {
 		diagnose_hint(reader->diagnostics, "wires are state.N, %sbank.N, low, high, and - for an open pin",
-		              stage == STAGE_LINE && machine->kind_bits > 0 ? "kind.N, " : "");
-	else
-		diagnose_hint(reader->diagnostics, "wires are %s%s%s%s and the names of %sdata signals, and - for an open pin",
-		              counts ? "" : "next.N", loop ? "" : counts ? "" : ", ",
-		              loop ? "" : stage == STAGE_LINE ? "step" : "kind.N", !counts ? "" : loop ? "clear" : ", clear",
-		              loop ? "" : stage == STAGE_LINE ? "the line stage's " : "the frame stage's ");
+		              stage == STAGE_LINE && kind != NULL ? "kind.N, " : "");
+		return;
+	}
+	if (!counts)
+		words[count++] = "next.N";
+	if (!loop && (stage == STAGE_LINE || kind != NULL))
+		words[count++] = stage == STAGE_LINE ? "step" : kind;
+	if (counts)
+		words[count++] = "clear";
+	struct text list = {0};
+	for (size_t word = 0; word < count; word++)
+		text_printf(&list, "%s%s", word > 0 ? ", " : "", words[word]);
+	diagnose_hint(reader->diagnostics, "wires are %s and the names of %sdata signals, and - for an open pin", text_string(&list),
+	              loop ? "" : stage == STAGE_LINE ? "the line stage's " : "the frame stage's ");
+	text_release(&list);
 }
 
 static void report_unknown_wire(struct reader *reader, const struct node *node, bool is_address, unsigned pin, enum stage stage)
@@ -95,8 +106,11 @@ static void report_unknown_wire(struct reader *reader, const struct node *node, 
 	diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place, "%s%u: there is no wire \"%s\" to put on it", is_address ? "A" : "D",
 	         pin, node->text);
 	const char *near = nearest_word(node->text, own.names, own.count);
-	if (machine->form == FORM_LOOP && (strcmp(node->text, "step") == 0 || parse_numbered(node->text, "kind", &number)))
+	const bool is_kind = parse_numbered(node->text, "kind", &number);
+	if (machine->form == FORM_LOOP && (is_kind || strcmp(node->text, "step") == 0))
 		diagnose_hint(reader->diagnostics, "\"%s\" belongs to line-frame machines", node->text);
+	else if (machine->kind_bits == 0 && is_kind)
+		diagnose_hint(reader->diagnostics, "the kind has no bits, as one line type needs none");
 	else if (has_name(&opposite, node->text))
 		diagnose_hint(reader->diagnostics, "\"%s\" is for %s pins", node->text, is_address ? "data" : "address");
 	else if (has_name(&elsewhere, node->text))
