@@ -5,6 +5,7 @@
 #     NAME.exit     its exit status, where that is not 2
 #     NAME.args     other arguments, separated by blanks; OUT stands for an output folder that does not exist
 #     NAME.make     a shell script that prints NAME.yaml, for plans that are better made than kept
+#     NAME/         further files that the case needs: the plans of a set NAME.yaml, which lists them as NAME/PLAN.yaml
 # Its name is that of the rule it breaks, -something may follow; or several-something, when it breaks several.
 #
 # A case NAME of tests/good is `scanlatch build NAME.yaml -o out/NAME`, run in a copy of the folder, and at least one of

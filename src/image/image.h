@@ -13,8 +13,10 @@ struct image {
 	size_t length;     // capacity
 };
 
-// Fills images[chip_count] in the arena from a table (maker's side). False when memory is out.
-bool images_fill(const struct table *table, struct arena *arena, struct image *images);
+// Fills images[chip_count] in the arena from tables (maker's side). The part of each chip that bank b of its wires selects holds
+// the rows of tables[b]; bank_count is a power of two, 1 for a plan on its own, and bank bits beyond it select nothing. All tables
+// have the wiring of the first; a table may stand for several banks. False when memory is out.
+bool images_fill(const struct table *const *tables, uint32_t bank_count, struct arena *arena, struct image *images);
 
 // True if what the chip answers depends on an address pin to which nothing is wired: *pin is the first such pin, *offset the first byte of the
 // image, with that pin low, that differs with it high. Cannot fail.

@@ -56,6 +56,13 @@ void timeline_destroy(struct timeline *timeline);
 // `lead` cells later. [cell_count] in the arena; NULL when memory is out.
 uint64_t *timeline_pins(const struct timeline *timeline, struct arena *arena);
 
+// The signals whose pins, as timeline_pins gives them, keep their level over each line of the frame. Linear time. Cannot fail.
+uint64_t timeline_line_signals(const struct timeline *timeline, const uint64_t *pins);
+
+// Those of them that a line-frame machine has as data of its line stage, but for the stretch signal: its frame stage would do
+// for them as well. Cannot fail.
+uint64_t signals_for_frame(const struct timeline *timeline, const uint64_t *pins);
+
 // The electrical levels (1 = high) of a set of asserted signals. Cannot fail.
 uint64_t levels_of(const struct plan *plan, uint64_t asserted);
 

@@ -52,7 +52,7 @@ scanlatch_images *scanlatch_images_make(const scanlatch_plan *plan, scanlatch_me
 		return NULL;
 	}
 	images->table = table_create(plan->timeline, messages->diagnostics);
-	if (images->table != NULL && images_fill(images->table, images->arena, images->images))
+	if (images->table != NULL && images_fill((const struct table *const[]){images->table}, 1, images->arena, images->images))
 		return images;
 	if (images->table != NULL)
 		report_memory(messages);

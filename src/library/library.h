@@ -7,6 +7,7 @@
 #include "base/text.h"
 #include "image/image.h"
 #include "layout/timeline.h"
+#include "plan/set.h"
 #include "proof/proof.h"
 #include "scanlatch/scanlatch.h"
 #include "table/table.h"
@@ -52,5 +53,22 @@ const char *source_label(const char *file);
 
 // A source of a file's label alone, for messages about it. NULL when memory is out.
 const struct source *source_of_name(scanlatch_messages *messages, const char *file);
+
+// A copy of a source in the arena of the messages: they quote it even when there is no plan to keep it. NULL when memory is out.
+const struct source *keep_source(struct arena *arena, const char *name, const char *bytes, size_t length);
+
+// Reads a plan's or set's file into an arena. False after reporting.
+bool read_plan_file(struct arena *arena, const char *path, char **bytes, size_t *length, scanlatch_messages *messages);
+
+// A set and the plans of its listed banks, which agree.
+struct plan_set {
+	struct arena *arena;       // the catalogue and what stands here
+	struct set *set;
+	struct plan **plans;       // [set->bank_count]
+};
+
+// Reads a set's bytes and the files that it names. `name` is what messages call it. NULL after reporting.
+struct plan_set *plan_set_load(const char *name, const char *bytes, size_t length, scanlatch_messages *messages);
+void plan_set_destroy(struct plan_set *plans);
 
 #endif

@@ -18,8 +18,7 @@ static bool load_plan(scanlatch_plan *plan, struct diagnostics *diagnostics)
 	return plan->timeline != NULL;
 }
 
-// A copy of the source, in the arena of the messages: they quote it even when there is no plan to keep it.
-static const struct source *keep_source(struct arena *arena, const char *name, const char *bytes, size_t length)
+const struct source *keep_source(struct arena *arena, const char *name, const char *bytes, size_t length)
 {
 	struct source *source = arena_alloc(arena, sizeof *source);
 	if (source == NULL)

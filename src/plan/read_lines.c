@@ -155,6 +155,22 @@ static void report_expression(struct reader *reader, const struct node *node, en
 		         SHORT(rest), words);
 }
 
+// The rows of a line type serve all its lines: in a line-frame machine no hold can tell them apart.
+static bool check_variables(struct reader *reader, const struct hold *hold)
+{
+	if (reader->plan->machine.form == FORM_LOOP)
+		return true;
+	const bool line = expression_uses(hold->expression, VARIABLE_LINE);
+	if (!line && !expression_uses(hold->expression, VARIABLE_ROW))
+		return true;
+	diagnose(reader->diagnostics, RULE_BAD_EXPRESSION, hold->place,
+	         "expression \"%s\": wanted no variables but cell and col in a line-frame machine, found \"%s\"", hold->text,
+	         variable_name(line ? VARIABLE_LINE : VARIABLE_ROW));
+	diagnose_hint(reader->diagnostics, "all lines of a type have the same states in the line stage: what differs from line to line is the "
+	                                   "frame stage's");
+	return false;
+}
+
 static bool read_hold(struct reader *reader, const struct node *field, const struct node *value, struct hold *hold)
 {
 	const struct plan *plan = reader->plan;
@@ -169,7 +185,7 @@ static bool read_hold(struct reader *reader, const struct node *field, const str
 		return false;
 	hold->field = find_field(plan, field->text);
 	if (hold->field != SIZE_MAX)
-		return status == EXPRESSION_OK;
+		return status == EXPRESSION_OK && check_variables(reader, hold);
 	const char *names[LIMIT_FIELDS];
 	for (size_t index = 0; index < plan->machine.field_count; index++)
 		names[index] = plan->machine.fields[index].name;

@@ -18,26 +18,38 @@ enum {
 	MACHINE_KEYS
 };
 
-static const struct key machine_keys[MACHINE_KEYS] = {
+static const struct key loop_keys[MACHINE_KEYS] = {
 	[MACHINE_FORM] = {"form", KEY_REQUIRED},       [MACHINE_STATE] = {"state", KEY_REQUIRED},
 	[MACHINE_FIELDS] = {"fields", KEY_OPTIONAL},   [MACHINE_START] = {"start", KEY_OPTIONAL},
 	[MACHINE_OUTPUTS] = {"outputs", KEY_OPTIONAL}, [MACHINE_ADVANCE] = {"advance", KEY_OPTIONAL},
-	[MACHINE_CLEAR] = {"clear", KEY_OPTIONAL},     [MACHINE_LINE] = {"line", KEY_LATER},
-	[MACHINE_FRAME] = {"frame", KEY_LATER},        [MACHINE_KIND] = {"kind", KEY_LATER},
+	[MACHINE_CLEAR] = {"clear", KEY_OPTIONAL},     [MACHINE_LINE] = {"line", KEY_ELSEWHERE},
+	[MACHINE_FRAME] = {"frame", KEY_ELSEWHERE},    [MACHINE_KIND] = {"kind", KEY_ELSEWHERE},
 };
 
-static void read_state_bits(struct reader *reader, const struct node *node)
-{
-	struct quantity quantity;
-	if (!read_quantity(reader, node, "state", 1u << DIMENSION_BITS, &quantity))
-		return;
-	if (!fraction_is_whole(quantity.value) || quantity.value.numerator < 1 || quantity.value.numerator > LIMIT_STATE_BITS) {
-		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "state: wanted 1 to %d bits, found \"%s\"", LIMIT_STATE_BITS,
-		         SHORT(node->text));
-		return;
-	}
-	reader->plan->machine.line.state_bits = (unsigned)quantity.value.numerator;
-}
+#define TWO_STAGES_ONLY "a loop machine has one stage and no kinds: give state and the rest here, or make it form: line-frame"
+
+static const struct stray_key loop_strays[] = {
+	{"line", TWO_STAGES_ONLY},
+	{"frame", TWO_STAGES_ONLY},
+	{"kind", TWO_STAGES_ONLY},
+};
+
+static const struct key line_frame_keys[MACHINE_KEYS] = {
+	[MACHINE_FORM] = {"form", KEY_REQUIRED},        [MACHINE_STATE] = {"state", KEY_ELSEWHERE},
+	[MACHINE_FIELDS] = {"fields", KEY_OPTIONAL},    [MACHINE_START] = {"start", KEY_OPTIONAL},
+	[MACHINE_OUTPUTS] = {"outputs", KEY_ELSEWHERE}, [MACHINE_ADVANCE] = {"advance", KEY_ELSEWHERE},
+	[MACHINE_CLEAR] = {"clear", KEY_ELSEWHERE},     [MACHINE_LINE] = {"line", KEY_REQUIRED},
+	[MACHINE_FRAME] = {"frame", KEY_REQUIRED},      [MACHINE_KIND] = {"kind", KEY_OPTIONAL},
+};
+
+#define EACH_STAGE_HAS_ITS_OWN(key) "each stage has its own: write line: { " key ": ... } and frame: { " key ": ... }"
+
+static const struct stray_key line_frame_strays[] = {
+	{"state", EACH_STAGE_HAS_ITS_OWN("state")},
+	{"outputs", EACH_STAGE_HAS_ITS_OWN("outputs")},
+	{"advance", EACH_STAGE_HAS_ITS_OWN("advance")},
+	{"clear", EACH_STAGE_HAS_ITS_OWN("clear")},
+};
 
 static void read_fields(struct reader *reader, const struct node *node)
 {
@@ -74,70 +86,69 @@ static void read_start(struct reader *reader, const struct node *node)
 	machine->start_place = node->place;
 }
 
-static void read_advance(struct reader *reader, const struct node *advance, const struct node *clear)
-{
-	struct machine_plan *machine = &reader->plan->machine;
-	static const char *const advances[] = {[ADVANCE_TABLE] = "table", [ADVANCE_COUNT] = "count"};
-	static const char *const clears[] = {[CLEAR_SYNC] = "sync", [CLEAR_ASYNC] = "async"};
-	size_t choice;
-	bool known = true;
-	if (advance != NULL) {
-		known = read_choice(reader, advance, "advance", advances, COUNT_OF(advances), &choice);
-		machine->line.advance = known ? (enum advance)choice : ADVANCE_TABLE;
-	}
-	if (clear == NULL || !read_choice(reader, clear, "clear", clears, COUNT_OF(clears), &choice))
-		return;
-	machine->line.clear = (enum clear_kind)choice;
-	if (known && machine->line.advance == ADVANCE_TABLE) {
-		diagnose(reader->diagnostics, RULE_CLEAR_WITHOUT_COUNT, clear->place, "clear is for a counter, but this machine advances by table");
-		diagnose_hint(reader->diagnostics, "add advance: count, or leave clear out");
-	}
-}
-
-// True if the form is one that this version carries out.
+// Settles the form. False after reporting; a form that is missing is left to read_mapping.
 static bool read_form(struct reader *reader, const struct node *node)
 {
-	static const char *const forms[] = {"loop", "line-frame"};
-	size_t choice = 0;
-	const bool known = read_choice(reader, node, "form", forms, COUNT_OF(forms), &choice);
-	reader->line_frame = choice == 1;
-	if (reader->line_frame)
-		diagnose(reader->diagnostics, RULE_NOT_YET, node->place, "form: line-frame is not carried out by this version yet");
-	return known && choice == 0;
+	static const char *const forms[] = {[FORM_LOOP] = "loop", [FORM_LINE_FRAME] = "line-frame"};
+	struct machine_plan *machine = &reader->plan->machine;
+	size_t choice = FORM_LOOP;
+	if (node->kind != NODE_MAPPING)
+		return true;
+	const struct node *form = node_value(node, "form");
+	if (form != NULL && !read_choice(reader, form, "form", forms, COUNT_OF(forms), &choice))
+		return false;
+	if (form == NULL && (node_value(node, "line") != NULL || node_value(node, "frame") != NULL))
+		choice = FORM_LINE_FRAME;
+	machine->form = (enum machine_form)choice;
+	reader->form_known = true;
+	return true;
 }
 
-static const struct node *form_of(const struct node *machine)
+// Sorts the machine's keys, and each stage's own. False if it is no mapping.
+static bool read_nodes(struct reader *reader, const struct node *node, const struct node **values, struct stage_nodes *line,
+                       struct stage_nodes *frame)
 {
-	const struct node *form = machine->kind == NODE_MAPPING ? node_value(machine, "form") : NULL;
-	return form != NULL && form->kind == NODE_SCALAR ? form : NULL;
+	const bool is_said = node->kind == NODE_MAPPING && node_value(node, "form") != NULL;
+	if (reader->plan->machine.form == FORM_LOOP) {
+		const char *what = is_said ? "a loop machine" : "a machine";
+		report_elsewhere(reader, node, what, loop_strays, COUNT_OF(loop_strays));
+		if (!read_mapping(reader, node, what, loop_keys, MACHINE_KEYS, values))
+			return false;
+		*line = (struct stage_nodes){values[MACHINE_STATE], values[MACHINE_OUTPUTS], values[MACHINE_ADVANCE], values[MACHINE_CLEAR]};
+		return true;
+	}
+	const char *what = is_said ? "a line-frame machine" : "a machine";
+	report_elsewhere(reader, node, what, line_frame_strays, COUNT_OF(line_frame_strays));
+	if (!read_mapping(reader, node, what, line_frame_keys, MACHINE_KEYS, values))
+		return false;
+	if (values[MACHINE_LINE] != NULL)
+		read_stage_nodes(reader, values[MACHINE_LINE], STAGE_LINE, line);
+	if (values[MACHINE_FRAME] != NULL)
+		read_stage_nodes(reader, values[MACHINE_FRAME], STAGE_FRAME, frame);
+	reader->kind = values[MACHINE_KIND];
+	return true;
 }
 
 void read_machine(struct reader *reader, const struct node *node)
 {
 	struct machine_plan *machine = &reader->plan->machine;
 	const struct node *values[MACHINE_KEYS];
+	struct stage_nodes line = {NULL}, frame = {NULL};
 	const size_t errors_before = diagnostics_error_count(reader->diagnostics);
 	machine->place = node->place;
-	const struct node *form = form_of(node);
-	if (form != NULL && !read_form(reader, form))
+	if (!read_form(reader, node) || !read_nodes(reader, node, values, &line, &frame))
 		return;
-	if (!read_mapping(reader, node, "machine", machine_keys, MACHINE_KEYS, values))
-		return;
-	if (values[MACHINE_FORM] != NULL && form == NULL)
-		read_form(reader, values[MACHINE_FORM]);
-	if (values[MACHINE_STATE] != NULL)
-		read_state_bits(reader, values[MACHINE_STATE]);
+	read_state_bits(reader, line.state, &machine->line);
+	read_state_bits(reader, frame.state, &machine->frame);
 	if (values[MACHINE_FIELDS] != NULL)
 		read_fields(reader, values[MACHINE_FIELDS]);
 	reader->machine_known = diagnostics_error_count(reader->diagnostics) == errors_before;
 	if (values[MACHINE_START] != NULL)
 		read_start(reader, values[MACHINE_START]);
-	static const char *const outputs[] = {[OUTPUTS_REGISTERED] = "registered", [OUTPUTS_DIRECT] = "direct"};
-	size_t choice;
-	if (values[MACHINE_OUTPUTS] != NULL &&
-	    read_choice(reader, values[MACHINE_OUTPUTS], "outputs", outputs, COUNT_OF(outputs), &choice))
-		machine->line.outputs = (enum outputs)choice;
-	read_advance(reader, values[MACHINE_ADVANCE], values[MACHINE_CLEAR]);
+	read_outputs(reader, line.outputs, &machine->line);
+	read_outputs(reader, frame.outputs, &machine->frame);
+	const bool line_known = read_advance(reader, &line, STAGE_LINE), frame_known = read_advance(reader, &frame, STAGE_FRAME);
+	reader->words_known = reader->machine_known && line_known && frame_known;
 }
 
 const char *stage_name(enum stage stage)

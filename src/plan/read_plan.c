@@ -33,52 +33,67 @@ static const struct key plan_keys[PLAN_KEYS] = {
 	[PLAN_TIMING] = {"timing", KEY_OPTIONAL},     [PLAN_SWEEP] = {"sweep", KEY_OPTIONAL},
 };
 
-// Longest plan name: with a label and an ending it must still make a file name.
-#define PLAN_NAME_CHARACTERS 100
+// Longest name of a plan or set: with a label and an ending it must still make a file name.
+#define STEM_CHARACTERS 100
 
-static void read_version(struct reader *reader, const struct node *node)
+void read_version(struct reader *reader, const struct node *node, const char *what)
 {
 	if (node->kind == NODE_SCALAR && strcmp(node->text, "1") == 0)
 		return;
-	if (!expect_kind(reader, node, NODE_SCALAR, "scanlatch"))
+	if (!expect_kind(reader, node, NODE_SCALAR, what))
 		return;
-	diagnose(reader->diagnostics, RULE_LANGUAGE_VERSION, node->place, "scanlatch: wanted version 1 of the plan language, found \"%s\"",
+	diagnose(reader->diagnostics, RULE_LANGUAGE_VERSION, node->place, "%s: wanted version 1 of the plan language, found \"%s\"", what,
 	         SHORT(node->text));
 }
 
-static void read_plan_name(struct reader *reader, const struct node *node)
+bool read_file_stem(struct reader *reader, const struct node *node, const char **name)
 {
 	const char *text;
 	if (!read_scalar(reader, node, "name", &text))
-		return;
-	if (text[0] == '-' || node->length > PLAN_NAME_CHARACTERS ||
+		return false;
+	if (text[0] == '-' || node->length > STEM_CHARACTERS ||
 	    strspn(text, "abcdefghijklmnopqrstuvwxyz0123456789-") != node->length) {
 		diagnose(reader->diagnostics, RULE_BAD_NAME, node->place,
-		         "name \"%s\": wanted 1 to %d lower-case letters, digits and -, not starting with -", SHORT(text),
-		         PLAN_NAME_CHARACTERS);
-		return;
+		         "name \"%s\": wanted 1 to %d lower-case letters, digits and -, not starting with -", SHORT(text), STEM_CHARACTERS);
+		return false;
 	}
-	reader->plan->name = text;
+	*name = text;
+	return true;
 }
 
-static void read_note(struct reader *reader, const struct node *node)
+const char *read_note(struct reader *reader, const struct node *node)
 {
-	reader->plan->note = "";
-	if (node != NULL && expect_kind(reader, node, NODE_SCALAR, "note"))
-		reader->plan->note = node->text;
+	return node != NULL && expect_kind(reader, node, NODE_SCALAR, "note") ? node->text : "";
 }
 
-// True if the document is something else than a plan: a set, or a board; reported.
-static bool is_other_document(struct reader *reader, const struct node *root)
+static const struct node *set_key(const struct node *root)
 {
 	if (root->kind != NODE_MAPPING || node_value(root, "scanlatch") != NULL)
-		return false;
+		return NULL;
 	for (size_t pair = 0; pair < root->count; pair++)
-		if (strcmp(root->pairs[pair].key->text, "scanlatch-set") == 0) {
-			diagnose(reader->diagnostics, RULE_NOT_YET, root->pairs[pair].key->place, "sets are not carried out by this version yet");
-			return true;
-		}
-	return false;
+		if (strcmp(root->pairs[pair].key->text, "scanlatch-set") == 0)
+			return root->pairs[pair].key;
+	return NULL;
+}
+
+bool node_is_set(const struct node *root)
+{
+	return set_key(root) != NULL;
+}
+
+// True if the document is a set; reported.
+static bool refuse_set(struct reader *reader, const struct node *root)
+{
+	const struct node *key = set_key(root);
+	if (key == NULL)
+		return false;
+	diagnose(reader->diagnostics, RULE_BANK_PLAN, key->place, "wanted a plan, found a set");
+	if (reader->set != NULL) {
+		const struct set_bank *bank = &reader->set->banks[reader->bank];
+		diagnose_also(reader->diagnostics, bank->place, "bank %u of the set \"%s\"", bank->number, reader->set->file_name);
+		diagnose_hint(reader->diagnostics, "a set cannot stand in a set: name the plans themselves");
+	}
+	return true;
 }
 
 static void hint_board(struct reader *reader, const struct node *root, const struct node **values)
@@ -92,22 +107,23 @@ static void read_root(struct reader *reader, const struct node *root)
 {
 	struct plan *plan = reader->plan;
 	const struct node *values[PLAN_KEYS];
-	if (is_other_document(reader, root) || !read_mapping(reader, root, "a plan", plan_keys, PLAN_KEYS, values))
+	if (refuse_set(reader, root) || !read_mapping(reader, root, "a plan", plan_keys, PLAN_KEYS, values))
 		return;
 	hint_board(reader, root, values);
 	if (values[PLAN_VERSION] != NULL)
-		read_version(reader, values[PLAN_VERSION]);
+		read_version(reader, values[PLAN_VERSION], "scanlatch");
 	if (values[PLAN_NAME] != NULL)
-		read_plan_name(reader, values[PLAN_NAME]);
-	read_note(reader, values[PLAN_NOTE]);
+		read_file_stem(reader, values[PLAN_NAME], &plan->name);
+	plan->note = read_note(reader, values[PLAN_NOTE]);
 	if (values[PLAN_CLOCK] != NULL)
 		read_clock(reader, values[PLAN_CLOCK]);
 	if (values[PLAN_MACHINE] != NULL)
 		read_machine(reader, values[PLAN_MACHINE]);
 	if (values[PLAN_SIGNALS] != NULL)
 		read_signals(reader, values[PLAN_SIGNALS]);
-	if (values[PLAN_LINES] != NULL && !reader->line_frame)
+	if (values[PLAN_LINES] != NULL)
 		read_lines(reader, values[PLAN_LINES]);
+	settle_kinds(reader);
 	if (values[PLAN_FRAME] != NULL && plan->line_count > 0)
 		read_frame(reader, values[PLAN_FRAME]);
 	if (values[PLAN_PARTS] != NULL)
@@ -119,9 +135,7 @@ static void read_root(struct reader *reader, const struct node *root)
 		read_sweeps(reader, values[PLAN_SWEEP]);
 }
 
-// A path without its folders, printable as messages have it: a file's name may be any bytes, but JSON is UTF-8 (RFC 8259,
-// section 8.1). In the arena; NULL when memory is out.
-static const char *base_name(struct arena *arena, const char *path)
+const char *printable_base_name(struct arena *arena, const char *path)
 {
 	const char *slash = strrchr(path, '/');
 	const char *name = slash != NULL ? slash + 1 : path;
@@ -132,12 +146,12 @@ static const char *base_name(struct arena *arena, const char *path)
 	return copy;
 }
 
-struct plan *plan_read(const struct source *source, const struct catalogue *catalogue, struct diagnostics *diagnostics)
+// An empty plan in an arena of its own. NULL after reporting.
+static struct plan *make_plan(const struct source *source, struct diagnostics *diagnostics)
 {
-	const size_t errors_before = diagnostics_error_count(diagnostics);
 	struct arena *arena = arena_create();
 	struct plan *plan = arena != NULL ? arena_alloc(arena, sizeof *plan) : NULL;
-	const char *file_name = plan != NULL ? base_name(arena, source->name) : NULL;
+	const char *file_name = plan != NULL ? printable_base_name(arena, source->name) : NULL;
 	if (file_name == NULL) {
 		diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){source, 0, 0}, "memory is out");
 		arena_destroy(arena);
@@ -149,15 +163,30 @@ struct plan *plan_read(const struct source *source, const struct catalogue *cata
 	plan->source_crc32 = file_crc32(source->bytes, source->length);
 	for (size_t role = 0; role < ROLE_COUNT; role++)
 		plan->role_signal[role] = -1;
-	struct reader reader = {.arena = arena, .plan = plan, .catalogue = catalogue, .diagnostics = diagnostics};
-	const struct node *root = document_parse(arena, source, diagnostics);
+	return plan;
+}
+
+struct plan *plan_read_for_set(const struct source *source, const struct catalogue *catalogue, const struct set *set, size_t bank,
+                               struct diagnostics *diagnostics)
+{
+	const size_t errors_before = diagnostics_error_count(diagnostics);
+	struct plan *plan = make_plan(source, diagnostics);
+	if (plan == NULL)
+		return NULL;
+	struct reader reader = {.arena = plan->arena, .plan = plan, .catalogue = catalogue, .diagnostics = diagnostics, .set = set, .bank = bank};
+	reader.set_bits = plan->bank_bits = set != NULL ? set->bank_bits : 0;
+	const struct node *root = document_parse(plan->arena, source, diagnostics);
 	if (root != NULL)
 		read_root(&reader, root);
-	if (root == NULL || diagnostics_error_count(diagnostics) > errors_before) {
-		arena_destroy(arena);
-		return NULL;
-	}
-	return plan;
+	if (root != NULL && diagnostics_error_count(diagnostics) == errors_before)
+		return plan;
+	plan_destroy(plan);
+	return NULL;
+}
+
+struct plan *plan_read(const struct source *source, const struct catalogue *catalogue, struct diagnostics *diagnostics)
+{
+	return plan_read_for_set(source, catalogue, NULL, 0, diagnostics);
 }
 
 void plan_destroy(struct plan *plan)

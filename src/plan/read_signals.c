@@ -9,7 +9,16 @@ enum { SIGNAL_ROLE, SIGNAL_ACTIVE, SIGNAL_LEAD, SIGNAL_FROM, SIGNAL_STAGE, SIGNA
 
 static const struct key signal_keys[SIGNAL_KEYS] = {
 	[SIGNAL_ROLE] = {"role", KEY_REQUIRED}, [SIGNAL_ACTIVE] = {"active", KEY_REQUIRED}, [SIGNAL_LEAD] = {"lead", KEY_OPTIONAL},
-	[SIGNAL_FROM] = {"from", KEY_OPTIONAL}, [SIGNAL_STAGE] = {"stage", KEY_LATER},
+	[SIGNAL_FROM] = {"from", KEY_OPTIONAL}, [SIGNAL_STAGE] = {"stage", KEY_OPTIONAL},
+};
+
+static const struct key loop_signal_keys[SIGNAL_KEYS] = {
+	[SIGNAL_ROLE] = {"role", KEY_REQUIRED}, [SIGNAL_ACTIVE] = {"active", KEY_REQUIRED}, [SIGNAL_LEAD] = {"lead", KEY_OPTIONAL},
+	[SIGNAL_FROM] = {"from", KEY_OPTIONAL}, [SIGNAL_STAGE] = {"stage", KEY_ELSEWHERE},
+};
+
+static const struct stray_key loop_signal_strays[] = {
+	{"stage", "a loop machine has one stage: leave stage out, or make the machine form: line-frame"},
 };
 
 enum { FROM_KEY_FIELD, FROM_KEY_CODES, FROM_KEYS };
@@ -150,11 +159,28 @@ static void take_role(struct reader *reader, const struct node *node, size_t ind
 	plan->role_signal[role] = (int)index;
 }
 
+// Reads the stage of a signal whose origin is known.
+static void read_signal_stage(struct reader *reader, const struct node *node, struct signal *signal)
+{
+	enum stage stage;
+	if (!read_stage_word(reader, node, &stage))
+		return;
+	signal->stage = stage;
+	if (stage == STAGE_LINE || signal->origin == FROM_DATA)
+		return;
+	diagnose(reader->diagnostics, RULE_FRAME_FIELD, node->place,
+	         "signal \"%s\" comes from a field, which is of the line stage's state, and yet has stage: frame", signal->name);
+	diagnose_hint(reader->diagnostics, "leave stage out, or from: a frame signal has a bit of its own in the frame stage's word");
+}
+
 static void read_signal(struct reader *reader, const struct node *node, size_t index)
 {
 	struct signal *signal = &reader->plan->signals[index];
 	const struct node *values[SIGNAL_KEYS];
-	if (!read_mapping(reader, node, "a signal", signal_keys, SIGNAL_KEYS, values))
+	const bool loop = reader->form_known && reader->plan->machine.form == FORM_LOOP;
+	if (loop)
+		report_elsewhere(reader, node, "a signal of a loop machine", loop_signal_strays, COUNT_OF(loop_signal_strays));
+	if (!read_mapping(reader, node, "a signal", loop ? loop_signal_keys : signal_keys, SIGNAL_KEYS, values))
 		return;
 	size_t choice;
 	if (values[SIGNAL_ROLE] != NULL && read_choice(reader, values[SIGNAL_ROLE], "role", role_words, ROLE_COUNT, &choice))
@@ -166,6 +192,8 @@ static void read_signal(struct reader *reader, const struct node *node, size_t i
 		read_lead(reader, values[SIGNAL_LEAD], signal);
 	if (values[SIGNAL_FROM] != NULL)
 		read_origin(reader, values[SIGNAL_FROM], signal);
+	if (values[SIGNAL_STAGE] != NULL)
+		read_signal_stage(reader, values[SIGNAL_STAGE], signal);
 }
 
 static void check_stretch_signal(struct reader *reader)

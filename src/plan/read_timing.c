@@ -73,19 +73,30 @@ static const struct logic_part *read_logic(struct reader *reader, const struct n
 	return part;
 }
 
+// The two stages of a machine may have counters of different kinds; what the plan names is both.
+static void read_counter(struct reader *reader, const struct node *node, enum stage stage)
+{
+	struct timing *timing = &reader->plan->timing;
+	const bool async = machine_stage(&reader->plan->machine, stage)->clear == CLEAR_ASYNC;
+	const char *usual = async ? "74HC161" : "74HC163";
+	const struct logic_part *counter = stage == STAGE_LINE || node == NULL
+	                                       ? read_logic(reader, node, LOGIC_COUNTER, usual)
+	                                       : catalogue_logic(reader->catalogue, timing->counter_part[STAGE_LINE]);
+	timing->counter_part[stage] = counter->name;
+	timing->counter_delay_s[stage] = counter->delay_s;
+	timing->counter_setup_s[stage] = counter->setup_s;
+}
+
 static void read_logic_parts(struct reader *reader, const struct node *const *values)
 {
 	struct timing *timing = &reader->plan->timing;
-	const bool async = reader->plan->machine.line.clear == CLEAR_ASYNC;
 	const struct logic_part *latch = read_logic(reader, values[TIMING_LATCH], LOGIC_LATCH, "74HC574");
-	const struct logic_part *counter = read_logic(reader, values[TIMING_COUNTER], LOGIC_COUNTER, async ? "74HC161" : "74HC163");
 	const struct logic_part *decoder = read_logic(reader, values[TIMING_DECODER], LOGIC_DECODER, "74HC138");
+	read_counter(reader, values[TIMING_COUNTER], STAGE_LINE);
+	read_counter(reader, values[TIMING_COUNTER], STAGE_FRAME);
 	timing->latch_part = latch->name;
 	timing->latch_delay_s = latch->delay_s;
 	timing->latch_setup_s = latch->setup_s;
-	timing->counter_part[STAGE_LINE] = counter->name;
-	timing->counter_delay_s[STAGE_LINE] = counter->delay_s;
-	timing->counter_setup_s[STAGE_LINE] = counter->setup_s;
 	timing->decoder_part = decoder->name;
 	timing->decoder_delay_s = decoder->delay_s;
 }
@@ -127,6 +138,10 @@ void read_timing(struct reader *reader, const struct node *node)
 	for (size_t key = 0; key < TIMING_KEYS; key++)
 		if (overrides[key] != NULL && values[key] != NULL)
 			read_time(reader, values[key], timing_keys[key].name, false, overrides[key]);
+	if (values[TIMING_COUNTER_DELAY] != NULL)
+		timing->counter_delay_s[STAGE_FRAME] = timing->counter_delay_s[STAGE_LINE];
+	if (values[TIMING_COUNTER_SETUP] != NULL)
+		timing->counter_setup_s[STAGE_FRAME] = timing->counter_setup_s[STAGE_LINE];
 	if (values[TIMING_SHARE] != NULL)
 		read_share(reader, values[TIMING_SHARE]);
 }

@@ -100,6 +100,21 @@ bool key_is_misspelt(const struct node *mapping, const struct key *keys, size_t 
 	return false;
 }
 
+bool report_elsewhere(struct reader *reader, const struct node *node, const char *what, const struct stray_key *strays, size_t count)
+{
+	const char *told = NULL;
+	for (size_t pair = 0; node->kind == NODE_MAPPING && pair < node->count; pair++)
+		for (size_t stray = 0; stray < count; stray++) {
+			const struct node *key = node->pairs[pair].key;
+			if (strcmp(key->text, strays[stray].name) != 0 || (told != NULL && strcmp(strays[stray].hint, told) == 0))
+				continue;
+			told = strays[stray].hint;
+			diagnose(reader->diagnostics, RULE_UNKNOWN_KEY, key->place, "%s has no key \"%s\"", what, key->text);
+			diagnose_hint(reader->diagnostics, "%s", told);
+		}
+	return told == NULL;
+}
+
 bool read_mapping(struct reader *reader, const struct node *node, const char *what, const struct key *keys, size_t count,
                   const struct node **values)
 {
@@ -107,18 +122,21 @@ bool read_mapping(struct reader *reader, const struct node *node, const char *wh
 		values[index] = NULL;
 	if (!expect_kind(reader, node, NODE_MAPPING, what))
 		return false;
+	bool complete = true;
 	for (size_t pair = 0; pair < node->count; pair++) {
 		const struct node *key = node->pairs[pair].key;
 		const size_t index = find_key(keys, count, key->text);
 		if (index == SIZE_MAX)
 			report_unknown_key(reader, key, what, keys, count);
+		else if (keys[index].need == KEY_ELSEWHERE)
+			complete = false;
 		else if (keys[index].need == KEY_LATER)
 			diagnose(reader->diagnostics, RULE_NOT_YET, key->place, "\"%s\" of %s is not carried out by this version yet",
 			         key->text, what);
 		else
 			values[index] = node->pairs[pair].value;
 	}
-	for (size_t index = 0; index < count; index++)
+	for (size_t index = 0; complete && index < count; index++)
 		if (keys[index].need == KEY_REQUIRED && values[index] == NULL && !key_is_misspelt(node, keys, count, index))
 			diagnose(reader->diagnostics, RULE_MISSING_KEY, node->place, "%s needs the key \"%s\"", what, keys[index].name);
 	return true;
@@ -252,6 +270,20 @@ bool read_quantity(struct reader *reader, const struct node *node, const char *w
 		         SHORT(text));
 	hint_quantity(reader, text, status, allowed);
 	return false;
+}
+
+bool read_bit_count(struct reader *reader, const struct node *node, const char *what, int64_t least, int64_t most, unsigned *bits)
+{
+	struct quantity quantity;
+	if (!read_quantity(reader, node, what, 1u << DIMENSION_BITS, &quantity))
+		return false;
+	if (!fraction_is_whole(quantity.value) || quantity.value.numerator < least || quantity.value.numerator > most) {
+		diagnose(reader->diagnostics, RULE_BAD_NUMBER, node->place, "%s: wanted %lld to %lld bits, found \"%s\"", what,
+		         (long long)least, (long long)most, node->text);
+		return false;
+	}
+	*bits = (unsigned)quantity.value.numerator;
+	return true;
 }
 
 bool read_time(struct reader *reader, const struct node *node, const char *what, bool positive, struct fraction *seconds)

@@ -6,9 +6,7 @@
 
 #include "base/text.h"
 
-#define NUMBERED_BYTES 24
 #define MISSING_NAMED 4
-#define NO_BIT UINT_MAX
 
 // Splits "state.12" into its word and number. False if the text has another form.
 static bool parse_numbered(const char *text, const char *word, unsigned *number)
@@ -25,37 +23,41 @@ static bool parse_numbered(const char *text, const char *word, unsigned *number)
 
 // Names of wires, to find the one that is meant.
 struct wire_names {
-	char numbered[LIMIT_STATE_BITS + LIMIT_BANK_BITS][NUMBERED_BYTES];
-	const char *names[LIMIT_STATE_BITS + LIMIT_BANK_BITS + LIMIT_SIGNALS];
+	char numbered[LIMIT_WORD_BITS][WIRE_NAME_BYTES];
+	const char *names[LIMIT_WORD_BITS];
 	size_t count;
 };
 
-static void add_numbered(struct wire_names *wires, const char *word, unsigned bits)
+// How many bank bits may be wired.
+static unsigned bank_limit(const struct reader *reader)
 {
-	for (unsigned bit = 0; bit < bits; bit++) {
-		char *name = wires->numbered[wires->count];
-		snprintf(name, NUMBERED_BYTES, "%s.%u", word, bit);
-		wires->names[wires->count++] = name;
-	}
+	return reader->set_bits > 0 ? reader->set_bits : LIMIT_BANK_BITS;
 }
 
-static void add_address_names(const struct plan *plan, struct wire_names *wires)
+static void list_address_names(const struct reader *reader, enum stage stage, struct wire_names *wires)
 {
-	add_numbered(wires, "state", plan->machine.line.state_bits);
-	add_numbered(wires, "bank", LIMIT_BANK_BITS);
-	wires->names[wires->count++] = "low";
-	wires->names[wires->count++] = "high";
+	struct address_wire bits[LIMIT_ADDRESS_BITS + 2];
+	size_t count = address_of(reader->plan, stage, bank_limit(reader), bits);
+	bits[count++] = (struct address_wire){ADDRESS_LOW, 0};
+	bits[count++] = (struct address_wire){ADDRESS_HIGH, 0};
+	for (wires->count = 0; wires->count < count; wires->count++)
+		wires->names[wires->count] = address_wire_name(bits[wires->count], wires->numbered[wires->count]);
 }
 
-static void add_data_names(const struct plan *plan, struct wire_names *wires)
+static void list_data_names(const struct reader *reader, enum stage stage, struct wire_names *wires)
 {
-	if (plan->machine.line.advance == ADVANCE_COUNT)
-		wires->names[wires->count++] = "clear";
+	struct data_wire word[LIMIT_WORD_BITS];
+	const size_t count = word_of(reader->plan, stage, word);
+	for (wires->count = 0; wires->count < count; wires->count++)
+		wires->names[wires->count] = data_wire_name(reader->plan, word[wires->count], wires->numbered[wires->count]);
+}
+
+static void list_names(const struct reader *reader, enum stage stage, bool is_address, struct wire_names *wires)
+{
+	if (is_address)
+		list_address_names(reader, stage, wires);
 	else
-		add_numbered(wires, "next", plan->machine.line.state_bits);
-	for (size_t signal = 0; signal < plan->signal_count; signal++)
-		if (signal_is_data(&plan->signals[signal]))
-			wires->names[wires->count++] = plan->signals[signal].name;
+		list_data_names(reader, stage, wires);
 }
 
 static bool has_name(const struct wire_names *wires, const char *text)
@@ -66,97 +68,179 @@ static bool has_name(const struct wire_names *wires, const char *text)
 	return false;
 }
 
-// `forms` says what there is for such a pin.
-static void report_unknown_wire(struct reader *reader, const struct node *node, bool is_address, unsigned pin, const char *forms)
+// "next.N, step and the names of the line stage's data signals".
+static void hint_wires(struct reader *reader, enum stage stage, bool is_address)
 {
-	struct wire_names address = {.count = 0}, data = {.count = 0};
-	add_address_names(reader->plan, &address);
-	add_data_names(reader->plan, &data);
-	const struct wire_names *own = is_address ? &address : &data;
+	const struct machine_plan *machine = &reader->plan->machine;
+	const bool loop = machine->form == FORM_LOOP, counts = machine_stage(machine, stage)->advance == ADVANCE_COUNT;
+	const char *words[3], *kind = machine->kind_bits > 0 ? "kind.N" : NULL;
+	size_t count = 0;
+	if (is_address) {
+		diagnose_hint(reader->diagnostics, "wires are state.N, %sbank.N, low, high, and - for an open pin",
+		              stage == STAGE_LINE && kind != NULL ? "kind.N, " : "");
+		return;
+	}
+	if (!counts)
+		words[count++] = "next.N";
+	if (!loop && (stage == STAGE_LINE || kind != NULL))
+		words[count++] = stage == STAGE_LINE ? "step" : kind;
+	if (counts)
+		words[count++] = "clear";
+	struct text list = {0};
+	for (size_t word = 0; word < count; word++)
+		text_printf(&list, "%s%s", word > 0 ? ", " : "", words[word]);
+	diagnose_hint(reader->diagnostics, "wires are %s and the names of %sdata signals, and - for an open pin", text_string(&list),
+	              loop ? "" : stage == STAGE_LINE ? "the line stage's " : "the frame stage's ");
+	text_release(&list);
+}
+
+static void report_unknown_wire(struct reader *reader, const struct node *node, bool is_address, unsigned pin, enum stage stage)
+{
+	const struct machine_plan *machine = &reader->plan->machine;
+	const enum stage other = stage == STAGE_LINE && machine->form == FORM_LINE_FRAME ? STAGE_FRAME : STAGE_LINE;
+	struct wire_names own, opposite, elsewhere;
+	unsigned number;
+	list_names(reader, stage, is_address, &own);
+	list_names(reader, stage, !is_address, &opposite);
+	list_names(reader, other, is_address, &elsewhere);
 	diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place, "%s%u: there is no wire \"%s\" to put on it", is_address ? "A" : "D",
 	         pin, SHORT(node->text));
-	const char *near = nearest_word(node->text, own->names, own->count);
-	if (has_name(is_address ? &data : &address, node->text))
+	const char *near = nearest_word(node->text, own.names, own.count);
+	const bool is_kind = parse_numbered(node->text, "kind", &number);
+	if (machine->form == FORM_LOOP && (is_kind || strcmp(node->text, "step") == 0))
+		diagnose_hint(reader->diagnostics, "\"%s\" belongs to line-frame machines", SHORT(node->text));
+	else if (machine->kind_bits == 0 && is_kind)
+		diagnose_hint(reader->diagnostics, "the kind has no bits, as one line type needs none");
+	else if (has_name(&opposite, node->text))
 		diagnose_hint(reader->diagnostics, "\"%s\" is for %s pins", SHORT(node->text), is_address ? "data" : "address");
+	else if (has_name(&elsewhere, node->text))
+		diagnose_hint(reader->diagnostics, "\"%s\" is a wire of the %s stage, and this chip is of the %s stage", SHORT(node->text),
+		              stage_name(other), stage_name(stage));
 	else if (near != NULL)
 		diagnose_hint(reader->diagnostics, "did you mean \"%s\"?", near);
 	else
-		diagnose_hint(reader->diagnostics, "wires are %s, and - for an open pin", forms);
+		hint_wires(reader, stage, is_address);
 }
 
-static void report_beyond(struct reader *reader, const struct node *node, const char *pin, unsigned index, const char *word,
-                          unsigned bits)
+static void report_beyond(struct reader *reader, const struct node *node, const char *pin, unsigned index, unsigned bits)
 {
-	diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place, "%s%u: there is no \"%s\": the highest is %s.%u", pin, index,
-	         SHORT(node->text), word, bits - 1);
+	diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place, "%s%u: there is no \"%s\": the highest is %.*s.%u", pin, index,
+	         SHORT(node->text), (int)strcspn(node->text, "."), SHORT(node->text), bits - 1);
 }
 
-static bool parse_address_wire(struct reader *reader, const struct node *node, unsigned pin, struct address_wire *wire)
+// Reads what a wire of an address pin is, whether the machine has it or not. False if it has another form.
+static bool parse_address_text(const char *text, struct address_wire *wire)
+{
+	unsigned number = 0;
+	if (strcmp(text, "-") == 0)
+		wire->kind = ADDRESS_OPEN;
+	else if (strcmp(text, "low") == 0)
+		wire->kind = ADDRESS_LOW;
+	else if (strcmp(text, "high") == 0)
+		wire->kind = ADDRESS_HIGH;
+	else if (parse_numbered(text, "state", &number))
+		wire->kind = ADDRESS_STATE;
+	else if (parse_numbered(text, "kind", &number))
+		wire->kind = ADDRESS_KIND;
+	else if (parse_numbered(text, "bank", &number))
+		wire->kind = ADDRESS_BANK;
+	else
+		return false;
+	wire->index = number;
+	return true;
+}
+
+// How many bits of that kind address a stage; those of other kinds are as many as one likes.
+static unsigned address_bits_like(const struct reader *reader, enum stage stage, struct address_wire wire)
+{
+	struct address_wire bits[LIMIT_ADDRESS_BITS];
+	const size_t count = address_of(reader->plan, stage, bank_limit(reader), bits);
+	unsigned found = 0;
+	if (wire.kind == ADDRESS_OPEN || wire.kind == ADDRESS_LOW || wire.kind == ADDRESS_HIGH)
+		return UINT_MAX;
+	for (size_t bit = 0; bit < count; bit++)
+		found += bits[bit].kind == wire.kind;
+	return found;
+}
+
+static bool parse_address_wire(struct reader *reader, const struct node *node, unsigned pin, struct chip *chip)
 {
 	const char *text;
-	unsigned number;
+	struct address_wire wire;
 	if (!read_scalar(reader, node, "address", &text))
 		return false;
-	if (strcmp(text, "-") == 0)
-		*wire = (struct address_wire){ADDRESS_OPEN, 0};
-	else if (strcmp(text, "low") == 0)
-		*wire = (struct address_wire){ADDRESS_LOW, 0};
-	else if (strcmp(text, "high") == 0)
-		*wire = (struct address_wire){ADDRESS_HIGH, 0};
-	else if (parse_numbered(text, "state", &number) && number < reader->plan->machine.line.state_bits)
-		*wire = (struct address_wire){ADDRESS_STATE, number};
-	else if (parse_numbered(text, "bank", &number) && number < LIMIT_BANK_BITS)
-		*wire = (struct address_wire){ADDRESS_BANK, number};
-	else if (parse_numbered(text, "kind", &number)) {
-		diagnose(reader->diagnostics, RULE_NOT_YET, node->place,
-		         "A%u: \"%s\" belongs to line-frame machines, which this version does not carry out yet", pin, SHORT(text));
-		return false;
-	} else if (parse_numbered(text, "state", &number)) {
-		report_beyond(reader, node, "A", pin, "state", reader->plan->machine.line.state_bits);
-		return false;
-	} else if (parse_numbered(text, "bank", &number)) {
-		report_beyond(reader, node, "A", pin, "bank", LIMIT_BANK_BITS);
-		return false;
-	} else {
-		report_unknown_wire(reader, node, true, pin, "state.N, bank.N, low, high");
+	const bool formed = parse_address_text(text, &wire);
+	const unsigned bits = formed ? address_bits_like(reader, chip->stage, wire) : 0;
+	if (formed && wire.index < bits) {
+		chip->address[pin] = wire;
+		return true;
+	}
+	if (bits == 0) {
+		report_unknown_wire(reader, node, true, pin, chip->stage);
 		return false;
 	}
+	report_beyond(reader, node, "A", pin, bits);
+	if (wire.kind == ADDRESS_BANK && reader->set_bits > 0)
+		diagnose_hint(reader->diagnostics, "the set has %u bank bit%s", bits, bits == 1 ? "" : "s");
+	return false;
+}
+
+// The same for data pins.
+static bool parse_data_text(const struct plan *plan, const char *text, struct data_wire *wire)
+{
+	unsigned number = 0;
+	const size_t signal = find_signal(plan, text);
+	if (strcmp(text, "-") == 0)
+		wire->kind = DATA_OPEN;
+	else if (strcmp(text, "step") == 0)
+		wire->kind = DATA_STEP;
+	else if (strcmp(text, "clear") == 0)
+		wire->kind = DATA_CLEAR;
+	else if (parse_numbered(text, "next", &number))
+		wire->kind = DATA_NEXT;
+	else if (parse_numbered(text, "kind", &number))
+		wire->kind = DATA_KIND;
+	else if (signal != SIZE_MAX)
+		wire->kind = DATA_SIGNAL;
+	else
+		return false;
+	wire->index = signal != SIZE_MAX ? (unsigned)signal : number;
 	return true;
 }
 
-static bool parse_data_wire(struct reader *reader, const struct node *node, unsigned pin, struct data_wire *wire)
+// Counts the bits of that kind in a stage's word; *found: the wire is one of them, or an open pin.
+static unsigned word_bits_like(const struct plan *plan, enum stage stage, struct data_wire wire, bool *found)
+{
+	struct data_wire word[LIMIT_WORD_BITS];
+	const size_t count = word_of(plan, stage, word);
+	unsigned bits = 0;
+	*found = wire.kind == DATA_OPEN;
+	for (size_t bit = 0; bit < count; bit++) {
+		bits += word[bit].kind == wire.kind;
+		*found = *found || (word[bit].kind == wire.kind && word[bit].index == wire.index);
+	}
+	return bits;
+}
+
+static void parse_data_wire(struct reader *reader, const struct node *node, unsigned pin, struct chip *chip)
 {
 	const struct plan *plan = reader->plan;
-	const bool counted = plan->machine.line.advance == ADVANCE_COUNT;
 	const char *text;
-	unsigned number;
+	struct data_wire wire;
 	if (!read_scalar(reader, node, "data", &text))
-		return false;
-	const size_t signal = find_signal(plan, text);
-	if (strcmp(text, "-") == 0)
-		*wire = (struct data_wire){DATA_OPEN, 0};
-	else if (signal != SIZE_MAX && signal_is_data(&plan->signals[signal]))
-		*wire = (struct data_wire){DATA_SIGNAL, (unsigned)signal};
-	else if (counted && strcmp(text, "clear") == 0)
-		*wire = (struct data_wire){DATA_CLEAR, 0};
-	else if (!counted && parse_numbered(text, "next", &number) && number < plan->machine.line.state_bits)
-		*wire = (struct data_wire){DATA_NEXT, number};
-	else if (strcmp(text, "step") == 0 || parse_numbered(text, "kind", &number)) {
-		diagnose(reader->diagnostics, RULE_NOT_YET, node->place,
-		         "D%u: \"%s\" belongs to line-frame machines, which this version does not carry out yet", pin, SHORT(text));
-		return false;
-	} else if (signal != SIZE_MAX) {
+		return;
+	bool found = false;
+	const bool formed = parse_data_text(plan, text, &wire);
+	const unsigned bits = formed ? word_bits_like(plan, chip->stage, wire, &found) : 0;
+	if (found)
+		chip->data[pin] = wire;
+	else if (formed && wire.kind == DATA_SIGNAL && !signal_is_data(&plan->signals[wire.index]))
 		diagnose(reader->diagnostics, RULE_WIRE_UNKNOWN, node->place,
 		         "D%u: signal \"%s\" comes from a field of the state and has no bit in the word", pin, SHORT(text));
-		return false;
-	} else if (!counted && parse_numbered(text, "next", &number)) {
-		report_beyond(reader, node, "D", pin, "next", plan->machine.line.state_bits);
-		return false;
-	} else {
-		report_unknown_wire(reader, node, false, pin, counted ? "clear and the names of data signals" : "next.N and the names of data signals");
-		return false;
-	}
-	return true;
+	else if (formed && wire.kind != DATA_SIGNAL && bits > 0)
+		report_beyond(reader, node, "D", pin, bits);
+	else
+		report_unknown_wire(reader, node, false, pin, chip->stage);
 }
 
 // Checks a list of pins against a part's; a shorter list leaves the rest open.
@@ -181,12 +265,10 @@ struct missing {
 	size_t count;
 };
 
-static void add_missing(struct missing *missing, const char *word, unsigned bit)
+static void add_missing(struct missing *missing, const char *name)
 {
 	if (missing->count < MISSING_NAMED)
-		text_printf(&missing->names, "%s%s", missing->count == 0 ? "" : ", ", word);
-	if (missing->count < MISSING_NAMED && bit != NO_BIT)
-		text_printf(&missing->names, ".%u", bit);
+		text_printf(&missing->names, "%s%s", missing->count == 0 ? "" : ", ", name);
 	missing->count++;
 }
 
@@ -208,15 +290,23 @@ static unsigned address_pin_of(const struct chip *chip, struct address_wire wire
 	return pin;
 }
 
+static bool is_bit(struct address_wire wire)
+{
+	return wire.kind == ADDRESS_STATE || wire.kind == ADDRESS_KIND || wire.kind == ADDRESS_BANK;
+}
+
 static void report_doubled_address(struct reader *reader, const struct node *node, const struct chip *chip, unsigned pin,
                                    unsigned first, bool all_known)
 {
 	struct missing missing = {.count = 0};
+	struct address_wire bits[LIMIT_ADDRESS_BITS];
+	char name[WIRE_NAME_BYTES];
+	const size_t count = address_of(reader->plan, chip->stage, reader->set_bits, bits);
 	diagnose(reader->diagnostics, RULE_WIRE_DOUBLED, node->items[pin]->place, "A%u: \"%s\" is on A%u of this chip already", pin,
 	         SHORT(node->items[pin]->text), first);
-	for (unsigned bit = 0; all_known && bit < reader->plan->machine.line.state_bits; bit++)
-		if (address_pin_of(chip, (struct address_wire){ADDRESS_STATE, bit}) == LIMIT_ADDRESS_PINS)
-			add_missing(&missing, "state", bit);
+	for (size_t bit = 0; all_known && bit < count; bit++)
+		if (address_pin_of(chip, bits[bit]) == LIMIT_ADDRESS_PINS)
+			add_missing(&missing, address_wire_name(bits[bit], name));
 	hint_missing(reader, &missing, "address pin of this chip");
 }
 
@@ -225,9 +315,8 @@ static bool check_address_doubled(struct reader *reader, const struct node *node
 {
 	bool good = true;
 	for (unsigned pin = 0; pin < node->count; pin++) {
-		const struct address_wire wire = chip->address[pin];
-		const unsigned first = address_pin_of(chip, wire);
-		if ((wire.kind != ADDRESS_STATE && wire.kind != ADDRESS_BANK) || first == pin)
+		const unsigned first = address_pin_of(chip, chip->address[pin]);
+		if (!is_bit(chip->address[pin]) || first == pin)
 			continue;
 		report_doubled_address(reader, node, chip, pin, first, all_known);
 		good = false;
@@ -240,19 +329,21 @@ void read_address_wires(struct reader *reader, const struct node *node, struct c
 	if (!expect_values(reader, node, "address") || !check_pin_count(reader, node, "A", chip->part, chip->part->address_pins))
 		return;
 	struct plan *plan = reader->plan;
+	struct address_wire bits[LIMIT_ADDRESS_BITS];
+	char name[WIRE_NAME_BYTES];
 	bool all_known = true;
 	for (unsigned pin = 0; pin < node->count; pin++) {
-		struct address_wire *wire = &chip->address[pin];
-		all_known = parse_address_wire(reader, node->items[pin], pin, wire) && all_known;
-		if (wire->kind == ADDRESS_BANK && wire->index >= plan->bank_bits)
-			plan->bank_bits = wire->index + 1;
+		all_known = parse_address_wire(reader, node->items[pin], pin, chip) && all_known;
+		if (chip->address[pin].kind == ADDRESS_BANK && chip->address[pin].index >= plan->bank_bits)
+			plan->bank_bits = chip->address[pin].index + 1;
 	}
 	if (!check_address_doubled(reader, node, chip, all_known) || !all_known)
 		return;
-	for (unsigned bit = 0; bit < plan->machine.line.state_bits; bit++)
-		if (address_pin_of(chip, (struct address_wire){ADDRESS_STATE, bit}) == LIMIT_ADDRESS_PINS)
-			diagnose(reader->diagnostics, RULE_WIRE_MISSING, node->place, "state.%u is on no address pin of chip \"%s\"", bit,
-			         chip->label != NULL ? chip->label : "");
+	const size_t count = address_of(plan, chip->stage, 0, bits);
+	for (size_t bit = 0; bit < count; bit++)
+		if (address_pin_of(chip, bits[bit]) == LIMIT_ADDRESS_PINS)
+			diagnose(reader->diagnostics, RULE_WIRE_MISSING, node->place, "%s is on no address pin of chip \"%s\"",
+			         address_wire_name(bits[bit], name), chip->label != NULL ? chip->label : "");
 }
 
 void read_data_wires(struct reader *reader, const struct node *node, struct chip *chip)
@@ -260,7 +351,7 @@ void read_data_wires(struct reader *reader, const struct node *node, struct chip
 	if (!expect_values(reader, node, "data") || !check_pin_count(reader, node, "D", chip->part, chip->part->data_pins))
 		return;
 	for (unsigned pin = 0; pin < node->count; pin++)
-		parse_data_wire(reader, node->items[pin], pin, &chip->data[pin]);
+		parse_data_wire(reader, node->items[pin], pin, chip);
 }
 
 // A data pin of a chip of the plan.
@@ -269,22 +360,22 @@ struct data_pin {
 	unsigned pin;
 };
 
-// The first pin that carries a wire, from *at on. False if there is none; then *at is past the last pin.
-static bool find_data_pin(const struct plan *plan, struct data_wire wanted, struct data_pin *at)
+// The first pin of a stage's chips that carries a wire, from *at on. False if there is none; then *at is past the last pin.
+static bool find_data_pin(const struct plan *plan, enum stage stage, struct data_wire wanted, struct data_pin *at)
 {
 	for (; at->chip < plan->chip_count; at->chip++, at->pin = 0) {
 		const struct chip *chip = &plan->chips[at->chip];
-		for (; chip->part != NULL && at->pin < chip->part->data_pins; at->pin++)
+		for (; chip->part != NULL && chip->stage == stage && at->pin < chip->part->data_pins; at->pin++)
 			if (chip->data[at->pin].kind == wanted.kind && chip->data[at->pin].index == wanted.index)
 				return true;
 	}
 	return false;
 }
 
-static bool is_wired(const struct plan *plan, struct data_wire wanted)
+static bool is_wired(const struct plan *plan, enum stage stage, struct data_wire wanted)
 {
 	struct data_pin at = {0, 0};
-	return find_data_pin(plan, wanted, &at);
+	return find_data_pin(plan, stage, wanted, &at);
 }
 
 static const struct node *list_of(const struct node *chips, size_t chip, const char *key)
@@ -292,21 +383,24 @@ static const struct node *list_of(const struct node *chips, size_t chip, const c
 	return chips->items[chip]->kind == NODE_MAPPING ? node_value(chips->items[chip], key) : NULL;
 }
 
-static void hint_missing_data(struct reader *reader)
+// "any chip", or of which stage's chips where there are two.
+static const char *any_chip(const struct plan *plan, enum stage stage)
+{
+	return plan->machine.form == FORM_LOOP ? "any chip" : stage == STAGE_LINE ? "any chip of the line stage" : "any chip of the frame stage";
+}
+
+static void hint_missing_data(struct reader *reader, enum stage stage)
 {
 	const struct plan *plan = reader->plan;
-	struct data_wire word[LIMIT_STATE_BITS + LIMIT_SIGNALS];
+	struct data_wire word[LIMIT_WORD_BITS];
 	struct missing missing = {.count = 0};
-	const size_t bits = word_of(plan, word);
-	for (size_t bit = 0; bit < bits; bit++) {
-		if (is_wired(plan, word[bit]))
-			continue;
-		if (word[bit].kind == DATA_NEXT)
-			add_missing(&missing, "next", word[bit].index);
-		else
-			add_missing(&missing, word[bit].kind == DATA_CLEAR ? "clear" : plan->signals[word[bit].index].name, NO_BIT);
-	}
-	hint_missing(reader, &missing, "data pin of any chip");
+	char name[WIRE_NAME_BYTES], where[64];
+	const size_t bits = word_of(plan, stage, word);
+	for (size_t bit = 0; bit < bits; bit++)
+		if (!is_wired(plan, stage, word[bit]))
+			add_missing(&missing, data_wire_name(plan, word[bit], name));
+	snprintf(where, sizeof where, "data pin of %s", any_chip(plan, stage));
+	hint_missing(reader, &missing, where);
 }
 
 void check_data_doubled(struct reader *reader, const struct node *chips, bool all_known)
@@ -315,36 +409,45 @@ void check_data_doubled(struct reader *reader, const struct node *chips, bool al
 	for (size_t chip = 0; chip < plan->chip_count; chip++)
 		for (unsigned pin = 0; pin < LIMIT_DATA_PINS; pin++) {
 			const struct data_wire wire = plan->chips[chip].data[pin];
+			const enum stage stage = plan->chips[chip].stage;
 			struct data_pin first = {0, 0};
-			if (wire.kind == DATA_OPEN || !find_data_pin(plan, wire, &first) || (first.chip == chip && first.pin == pin))
+			if (wire.kind == DATA_OPEN || !find_data_pin(plan, stage, wire, &first) || (first.chip == chip && first.pin == pin))
 				continue;
 			const struct node *node = list_of(chips, chip, "data")->items[pin];
 			const char *label = plan->chips[first.chip].label;
 			diagnose(reader->diagnostics, RULE_WIRE_DOUBLED, node->place, "D%u: \"%s\" is on D%u of chip \"%s\" already", pin,
 			         SHORT(node->text), first.pin, label != NULL ? label : "");
 			if (all_known)
-				hint_missing_data(reader);
+				hint_missing_data(reader, stage);
 		}
 }
 
-// Reports a bit of the word that is on no pin, where the next open pin is; moves *open past it.
-static void report_missing_data(struct reader *reader, const struct node *chips, struct data_wire wire, struct data_pin *open)
+// The last chip of a stage, which has one.
+static size_t last_chip(const struct plan *plan, enum stage stage)
+{
+	size_t chip = plan->chip_count - 1;
+	while (plan->chips[chip].stage != stage)
+		chip--;
+	return chip;
+}
+
+// Reports a bit of a stage's word that is on no pin, where the next open pin is; moves *open past it.
+static void report_missing_data(struct reader *reader, const struct node *chips, enum stage stage, struct data_wire wire,
+                                struct data_pin *open)
 {
 	const struct plan *plan = reader->plan;
-	const bool found = find_data_pin(plan, (struct data_wire){DATA_OPEN, 0}, open);
-	const size_t chip = found ? open->chip : plan->chip_count - 1;
+	char name[WIRE_NAME_BYTES];
+	const bool found = find_data_pin(plan, stage, (struct data_wire){DATA_OPEN, 0}, open);
+	const size_t chip = found ? open->chip : last_chip(plan, stage);
 	const struct place place = list_of(chips, chip, "data")->place;
-	if (wire.kind == DATA_NEXT)
-		diagnose(reader->diagnostics, RULE_WIRE_MISSING, place, "next.%u is on no data pin of any chip", wire.index);
-	else if (wire.kind == DATA_CLEAR)
-		diagnose(reader->diagnostics, RULE_WIRE_MISSING, place, "clear is on no data pin of any chip");
-	else
-		diagnose(reader->diagnostics, RULE_WIRE_MISSING, place, "signal \"%s\" is on no data pin of any chip",
-		         plan->signals[wire.index].name);
+	diagnose(reader->diagnostics, RULE_WIRE_MISSING, place, wire.kind == DATA_SIGNAL ? "signal \"%s\" is on no data pin of %s"
+	                                                                               : "%s is on no data pin of %s",
+	         data_wire_name(plan, wire, name), any_chip(plan, stage));
 	if (found)
 		diagnose_hint(reader->diagnostics, "D%u of chip \"%s\" is open", open->pin++, plan->chips[chip].label);
 	else
-		diagnose_hint(reader->diagnostics, "no data pin is left open: add a chip");
+		diagnose_hint(reader->diagnostics, "no data pin is left open: add a chip%s%s", plan->machine.form == FORM_LOOP ? "" : " with stage: ",
+		              plan->machine.form == FORM_LOOP ? "" : stage_name(stage));
 }
 
 static void check_banks_wired(struct reader *reader, const struct node *chips)
@@ -352,18 +455,24 @@ static void check_banks_wired(struct reader *reader, const struct node *chips)
 	const struct plan *plan = reader->plan;
 	for (size_t chip = 0; chip < plan->chip_count; chip++)
 		for (unsigned bit = 0; bit < plan->bank_bits; bit++)
-			if (address_pin_of(&plan->chips[chip], (struct address_wire){ADDRESS_BANK, bit}) == LIMIT_ADDRESS_PINS)
+			if (address_pin_of(&plan->chips[chip], (struct address_wire){ADDRESS_BANK, bit}) == LIMIT_ADDRESS_PINS) {
 				diagnose(reader->diagnostics, RULE_WIRE_MISSING, list_of(chips, chip, "address")->place,
 				         "bank.%u is on no address pin of chip \"%s\"", bit, plan->chips[chip].label);
+				if (reader->set_bits > 0)
+					diagnose_hint(reader->diagnostics, "the set has %u bank bit%s", reader->set_bits, reader->set_bits == 1 ? "" : "s");
+			}
 }
 
 void check_word_wired(struct reader *reader, const struct node *chips)
 {
-	struct data_wire word[LIMIT_STATE_BITS + LIMIT_SIGNALS];
-	struct data_pin open = {0, 0};
-	const size_t bits = word_of(reader->plan, word);
-	for (size_t bit = 0; bit < bits; bit++)
-		if (!is_wired(reader->plan, word[bit]))
-			report_missing_data(reader, chips, word[bit], &open);
+	const struct plan *plan = reader->plan;
+	for (unsigned stage = 0; stage < machine_stages(&plan->machine); stage++) {
+		struct data_wire word[LIMIT_WORD_BITS];
+		struct data_pin open = {0, 0};
+		const size_t bits = word_of(plan, (enum stage)stage, word);
+		for (size_t bit = 0; bit < bits; bit++)
+			if (!is_wired(plan, (enum stage)stage, word[bit]))
+				report_missing_data(reader, chips, (enum stage)stage, word[bit], &open);
+	}
 	check_banks_wired(reader, chips);
 }

@@ -145,7 +145,8 @@ bool assignment_begin(struct assignment *assignment, struct faults *faults)
 		place_start(assignment, faults);
 	place_fixed(assignment, faults);
 	place_singles(assignment, faults);
-	if (faults->count == before)
+	// Where there are kinds every cell is held, and only matching tells how many states it may have.
+	if (faults->count == before && assignment->constraints->kind_mask == 0)
 		compare_counts(assignment, faults);
 	return faults->count == before;
 }

@@ -118,16 +118,17 @@ static bool list_held(struct constraints *constraints, struct arena *arena)
 }
 
 bool constraints_create(struct constraints *constraints, struct arena *arena, const struct timeline *timeline,
-                        const uint64_t *pins, uint32_t period)
+                        const uint64_t *pins, uint32_t period, unsigned state_bits)
 {
 	const struct plan *plan = timeline->plan;
-	const uint32_t state_count = (uint32_t)1 << plan->machine.line.state_bits;
+	const uint32_t state_count = (uint32_t)1 << state_bits;
 	*constraints = (struct constraints){.timeline = timeline,
 	                                    .plan = plan,
 	                                    .pins = pins,
 	                                    .period = period,
 	                                    .state_count = state_count,
-	                                    .state_mask = state_count - 1};
+	                                    .state_mask = state_count - 1,
+	                                    .kind_mask = state_count - ((uint32_t)1 << plan->machine.line.state_bits)};
 	for (size_t signal = 0; signal < plan->signal_count; signal++)
 		if (plan->signals[signal].origin == FROM_FIELD) {
 			constraints->field_signals |= (uint64_t)1 << signal;

@@ -20,8 +20,9 @@ struct constraints {
 	const struct plan *plan;
 	const uint64_t *pins;
 	uint32_t period;
-	uint32_t state_count;    // 2^state_bits
-	uint32_t state_mask;     // all state bits
+	uint32_t state_count;    // 2^state_bits; in a line-frame machine 2^(state and kind bits)
+	uint32_t state_mask;     // all of these bits
+	uint32_t kind_mask;      // those of the kind, which every cell holds
 	uint64_t field_signals;  // bit s: signal s comes from a field
 	uint32_t decoder_mask;   // the state bits of fields that signals come from
 	struct key_map patterns; // asserted field signals
@@ -36,9 +37,19 @@ struct constraints {
 	uint32_t *held_cells;    // ascending in each class
 };
 
-// Sorts the cells of the period into classes. Memory is the arena's; false when it is out. Linear time.
+// Sorts the cells of the period into classes. State bits above those of the line stage are the kind's. Memory is the
+// arena's; false when it is out. Linear time.
 bool constraints_create(struct constraints *constraints, struct arena *arena, const struct timeline *timeline,
-                        const uint64_t *pins, uint32_t period);
+                        const uint64_t *pins, uint32_t period, unsigned state_bits);
+
+// How many bits it takes to number so many states. Cannot fail.
+static inline unsigned bits_for(uint32_t states)
+{
+	unsigned bits = 0;
+	while (((uint64_t)1 << bits) < states)
+		bits++;
+	return bits;
+}
 
 // The held bits of a cell and their values. Cannot fail.
 static inline uint32_t cell_mask(const struct constraints *constraints, uint32_t cell)

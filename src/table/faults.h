@@ -39,7 +39,9 @@ bool faults_full(const struct faults *faults, enum rule rule);
 // Notes that memory is out; returns false.
 bool faults_memory(struct faults *faults);
 
-// Turns the faults into diagnostics.
-void faults_report(const struct faults *faults, const struct timeline *timeline, struct diagnostics *diagnostics);
+// Turns the faults into diagnostics. In a line-frame machine the timeline has each line type once; `pins` are what its cells
+// show.
+void faults_report(const struct faults *faults, const struct timeline *timeline, const uint64_t *pins,
+                   struct diagnostics *diagnostics);
 
 #endif

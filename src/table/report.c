@@ -8,6 +8,7 @@ struct reporter {
 	struct arena *arena;
 	const struct timeline *timeline;
 	const struct plan *plan;
+	const uint64_t *pins;
 	struct diagnostics *diagnostics;
 };
 
@@ -16,9 +17,18 @@ static const char *or_unnamed(const char *words)
 	return words != NULL ? words : "(memory is out)";
 }
 
+static bool has_line_types(const struct reporter *reporter)
+{
+	return reporter->plan->machine.form == FORM_LINE_FRAME;
+}
+
 static const char *cell_words(const struct reporter *reporter, uint32_t cell)
 {
 	const struct cell_place place = timeline_place(reporter->timeline, cell);
+	if (has_line_types(reporter))
+		return or_unnamed(arena_format(reporter->arena, "line type \"%s\", cell %u, region \"%s\"",
+		                               timeline_line_name(reporter->timeline, cell), place.cell,
+		                               timeline_region_name(reporter->timeline, cell)));
 	return or_unnamed(arena_format(reporter->arena, "line %u (\"%s\"), cell %u, region \"%s\"", place.line,
 	                               timeline_line_name(reporter->timeline, cell), place.cell,
 	                               timeline_region_name(reporter->timeline, cell)));
@@ -26,17 +36,24 @@ static const char *cell_words(const struct reporter *reporter, uint32_t cell)
 
 static bool is_start(const struct reporter *reporter, uint32_t cell)
 {
-	return cell == 0 && reporter->plan->machine.has_start;
+	const bool first = has_line_types(reporter) ? timeline_place(reporter->timeline, cell).cell == 0 : cell == 0;
+	return first && reporter->plan->machine.has_start;
 }
 
+static uint32_t state_mask(const struct reporter *reporter)
+{
+	return ((uint32_t)1 << reporter->plan->machine.line.state_bits) - 1;
+}
+
+// What is held of the state; kind bits, which no plan speaks of, are left out.
 static uint32_t mask_at(const struct reporter *reporter, uint32_t cell)
 {
-	return reporter->timeline->has_holds ? reporter->timeline->hold_mask[cell] : 0;
+	return reporter->timeline->has_holds ? reporter->timeline->hold_mask[cell] & state_mask(reporter) : 0;
 }
 
 static uint32_t value_at(const struct reporter *reporter, uint32_t cell)
 {
-	return reporter->timeline->has_holds ? reporter->timeline->hold_value[cell] : 0;
+	return reporter->timeline->has_holds ? reporter->timeline->hold_value[cell] & state_mask(reporter) : 0;
 }
 
 // Where the plan says what holds a cell's state: its start, its region's first hold, or the region.
@@ -62,14 +79,6 @@ static struct place field_place(const struct reporter *reporter, uint32_t cell, 
 static const char *field_name(const struct reporter *reporter, size_t field)
 {
 	return reporter->plan->machine.fields[field].name;
-}
-
-static unsigned bits_for(uint32_t states)
-{
-	unsigned bits = 0;
-	while (((uint64_t)1 << bits) < states)
-		bits++;
-	return bits;
 }
 
 static void hint_bits(const struct reporter *reporter, uint32_t needed)
@@ -124,7 +133,8 @@ static void report_state_shared(const struct reporter *reporter, const struct fa
 {
 	diagnose(reporter->diagnostics, RULE_STATE_SHARED, hold_place(reporter, fault->cell),
 	         "%s, and %s, are held to one state, 0x%0*X, but their rows differ", cell_words(reporter, fault->cell),
-	         cell_words(reporter, fault->other), (int)(reporter->plan->machine.line.state_bits + 3) / 4, fault->state);
+	         cell_words(reporter, fault->other), (int)(reporter->plan->machine.line.state_bits + 3) / 4,
+	         fault->state & state_mask(reporter));
 	diagnose_also(reporter->diagnostics, hold_place(reporter, fault->other), "the second of the two is held here");
 	diagnose_hint(reporter->diagnostics, "hold a further field that tells the cells apart, or leave some bits free");
 }
@@ -147,18 +157,6 @@ static bool code_agrees(const struct reporter *reporter, size_t field, uint32_t 
 			return false;
 	}
 	return true;
-}
-
-// What a cell must show at its pins.
-static uint64_t asserted_at(const struct reporter *reporter, uint32_t cell)
-{
-	const int64_t cells = reporter->timeline->cell_count;
-	uint64_t asserted = 0;
-	for (size_t index = 0; index < reporter->plan->signal_count; index++) {
-		const int64_t led = (cell + reporter->plan->signals[index].lead_cells % cells + cells) % cells;
-		asserted |= reporter->timeline->asserted[led] & (uint64_t)1 << index;
-	}
-	return asserted;
 }
 
 // The first field that no code allowed by the cell's held bits serves; NO_SUBJECT if only fields together leave none.
@@ -263,7 +261,7 @@ static void report_code_conflict(const struct reporter *reporter, const struct f
 		report_code_twice(reporter, fault);
 		return;
 	}
-	const uint64_t asserted = asserted_at(reporter, fault->cell);
+	const uint64_t asserted = reporter->pins[fault->cell];
 	const size_t field = culprit(reporter, fault->cell, asserted);
 	const bool held = mask_at(reporter, fault->cell) != 0;
 	const char *what = field == NO_SUBJECT
@@ -278,14 +276,14 @@ static void report_code_conflict(const struct reporter *reporter, const struct f
 
 static void report_start_hold(const struct reporter *reporter, const struct fault *fault)
 {
-	const struct region *region = timeline_region(reporter->timeline, 0);
+	const struct region *region = timeline_region(reporter->timeline, fault->cell);
 	for (size_t index = 0; index < region->hold_count; index++) {
 		const struct field *field = &reporter->plan->machine.fields[region->holds[index].field];
-		if (field_value(field, fault->state) == field_value(field, value_at(reporter, 0)))
+		if (field_value(field, fault->state) == field_value(field, value_at(reporter, fault->cell)))
 			continue;
 		diagnose(reporter->diagnostics, RULE_START_CONFLICT, reporter->plan->machine.start_place,
 		         "start has %u in field \"%s\", but %s, holds it to %u", field_value(field, fault->state), field->name,
-		         cell_words(reporter, 0), field_value(field, value_at(reporter, 0)));
+		         cell_words(reporter, fault->cell), field_value(field, value_at(reporter, fault->cell)));
 		diagnose_also(reporter->diagnostics, region->holds[index].place, "the first cell is held here");
 		return;
 	}
@@ -293,7 +291,7 @@ static void report_start_hold(const struct reporter *reporter, const struct faul
 
 static void report_start_signal(const struct reporter *reporter, const struct fault *fault)
 {
-	const uint64_t asserted = asserted_at(reporter, 0);
+	const uint64_t asserted = reporter->pins[fault->cell];
 	for (size_t index = 0; index < reporter->plan->signal_count; index++) {
 		const struct signal *signal = &reporter->plan->signals[index];
 		const bool wanted = asserted >> index & 1;
@@ -305,7 +303,7 @@ static void report_start_signal(const struct reporter *reporter, const struct fa
 			continue;
 		diagnose(reporter->diagnostics, RULE_START_CONFLICT, reporter->plan->machine.start_place,
 		         "start has %u in field \"%s\", with which \"%s\" is %sasserted, but %s, wants it %sasserted", code,
-		         field->name, signal->name, wanted ? "not " : "", cell_words(reporter, 0), wanted ? "" : "not ");
+		         field->name, signal->name, wanted ? "not " : "", cell_words(reporter, fault->cell), wanted ? "" : "not ");
 		diagnose_also(reporter->diagnostics, signal->place, "signal \"%s\" has its codes here", signal->name);
 		return;
 	}
@@ -313,7 +311,7 @@ static void report_start_signal(const struct reporter *reporter, const struct fa
 
 static void report_start_conflict(const struct reporter *reporter, const struct fault *fault)
 {
-	if ((fault->state & mask_at(reporter, 0)) != value_at(reporter, 0))
+	if ((fault->state & mask_at(reporter, fault->cell)) != value_at(reporter, fault->cell))
 		report_start_hold(reporter, fault);
 	else
 		report_start_signal(reporter, fault);
@@ -346,7 +344,7 @@ static void report_codes_short(const struct reporter *reporter, const struct fau
 static void report_counted_automatic(const struct reporter *reporter, const struct fault *fault)
 {
 	const struct signal *signal = &reporter->plan->signals[fault->signal];
-	const bool asserted = asserted_at(reporter, fault->cell) >> fault->signal & 1;
+	const bool asserted = reporter->pins[fault->cell] >> fault->signal & 1;
 	diagnose(reporter->diagnostics, RULE_COUNTED_CONFLICT, signal->place,
 	         "signal \"%s\" is %sasserted in %s, and %sasserted in %s, but the counter has %u in field \"%s\" in both",
 	         signal->name, asserted ? "" : "not ", cell_words(reporter, fault->cell), asserted ? "not " : "",
@@ -357,7 +355,8 @@ static void report_counted_conflict(const struct reporter *reporter, const struc
 {
 	if (fault->field == NO_SUBJECT)
 		diagnose(reporter->diagnostics, RULE_COUNTED_CONFLICT, reporter->plan->machine.start_place,
-		         "wanted start 0, since a counter begins its frame there, found %u", fault->available);
+		         "wanted start 0, since a counter begins %s there, found %u",
+		         has_line_types(reporter) ? "each line" : "its frame", fault->available);
 	else if (fault->other != NO_CELL)
 		report_counted_automatic(reporter, fault);
 	else if (fault->signal == NO_SUBJECT)
@@ -395,9 +394,10 @@ static void report_fault(const struct reporter *reporter, const struct fault *fa
 	}
 }
 
-void faults_report(const struct faults *faults, const struct timeline *timeline, struct diagnostics *diagnostics)
+void faults_report(const struct faults *faults, const struct timeline *timeline, const uint64_t *pins,
+                   struct diagnostics *diagnostics)
 {
-	struct reporter reporter = {arena_create(), timeline, timeline->plan, diagnostics};
+	struct reporter reporter = {arena_create(), timeline, timeline->plan, pins, diagnostics};
 	if (reporter.arena == NULL || faults->memory_out)
 		diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){timeline->plan->source, 0, 0}, "memory is out");
 	for (size_t index = 0; index < faults->count && reporter.arena != NULL && !faults->memory_out; index++)

@@ -12,9 +12,8 @@
 bool solve_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell,
                   struct faults *faults);
 
-// Gives cell i state i, and checks that everything agrees with a counter. False with faults if not; state_of_cell is
-// then unspecified.
-bool count_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell,
+// Checks that everything agrees with a counter whose states state_of_cell[period] are. False with faults if not.
+bool count_states(const struct constraints *constraints, struct arena *arena, const uint32_t *state_of_cell,
                   struct faults *faults);
 
 #endif

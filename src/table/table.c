@@ -2,6 +2,7 @@
 
 #include "base/arena.h"
 #include "table/guard.h"
+#include "table/line_frame.h"
 #include "table/solve.h"
 
 static bool report_memory(const struct plan *plan, struct diagnostics *diagnostics)
@@ -10,13 +11,29 @@ static bool report_memory(const struct plan *plan, struct diagnostics *diagnosti
 	return false;
 }
 
+// A counter has state i in cell i of the period.
+static bool count_period(struct table *table, const struct constraints *constraints, struct arena *scratch, struct faults *faults)
+{
+	const uint32_t needed = table->period + (table->wiring.line.clear == CLEAR_ASYNC);
+	if (needed > constraints->state_count) {
+		struct fault fault = fault_at(RULE_COUNTER_SHORT, NO_CELL);
+		fault.needed = needed;
+		fault.available = constraints->state_count;
+		faults_add(faults, fault);
+		return false;
+	}
+	for (uint32_t cell = 0; cell < table->period; cell++)
+		table->state_of_cell[cell] = cell;
+	return count_states(constraints, scratch, table->state_of_cell, faults);
+}
+
 static bool solve_period(struct table *table, const struct timeline *folded, struct arena *scratch, struct faults *faults)
 {
 	struct constraints constraints;
-	if (!constraints_create(&constraints, scratch, folded, table->pins, table->period))
+	if (!constraints_create(&constraints, scratch, folded, table->pins, table->period, table->wiring.line.address_bits))
 		return faults_memory(faults);
 	if (table->wiring.line.advance == ADVANCE_COUNT)
-		return count_states(&constraints, scratch, table->state_of_cell, faults);
+		return count_period(table, &constraints, scratch, faults);
 	if (!solve_states(&constraints, scratch, table->state_of_cell, faults))
 		return false;
 	return guard_last_state(&constraints, scratch, table->state_of_cell) || faults_memory(faults);
@@ -74,9 +91,9 @@ static bool collect_codes(struct table *table, struct arena *scratch, size_t sig
 	size_t count = 0;
 	if (used == NULL)
 		return false;
-	for (uint32_t cell = 0; cell < table->period; cell++)
-		if (table->pins[cell] >> signal & 1)
-			used[field_value(field, table->state_of_cell[cell])] = true;
+	for (uint32_t row = 0; row < table->period; row++)
+		if (table->pins[line_row_cell(table, row)] >> signal & 1)
+			used[field_value(field, table->state_of_cell[row])] = true;
 	for (uint32_t value = 0; value < values; value++)
 		count += used[value];
 	uint32_t *codes = arena_array(table->arena, count, sizeof *codes);
@@ -111,41 +128,55 @@ static bool fill_codes(struct table *table, struct arena *scratch)
 	return true;
 }
 
-static uint64_t data_levels(const struct table *table, uint64_t asserted)
+static uint64_t data_levels(const struct table *table, enum stage stage, uint64_t asserted)
 {
-	return levels_of(table->timeline->plan, asserted) & table->wiring.line.data_signals;
+	return levels_of(table->timeline->plan, asserted) & wiring_stage(&table->wiring, stage)->data_signals;
 }
 
 // A spare row leads to the frame's first cell, with the data signals as they are there, or at rest and blanked.
-static struct row spare_row(const struct table *table)
+static struct row spare_row(const struct table *table, enum stage stage)
 {
+	const struct stage_wiring *wiring = wiring_stage(&table->wiring, stage);
+	const struct frame_line *first = &table->timeline->lines[0];
 	const int blanking = table->timeline->plan->role_signal[ROLE_BLANKING];
 	const uint64_t at_rest = blanking < 0 ? 0 : (uint64_t)1 << blanking;
-	const bool counts = table->wiring.line.advance == ADVANCE_COUNT;
+	const bool counts = wiring->advance == ADVANCE_COUNT, two = table->wiring.form == FORM_LINE_FRAME;
+	const bool registered = wiring->outputs == OUTPUTS_REGISTERED;
 	return (struct row){
-		.next = counts ? 0 : table->state_of_cell[0],
+		.next = counts || stage == STAGE_FRAME ? 0 : table->state_of_cell[0],
+		.kind = stage == STAGE_FRAME ? first->type : 0,
 		.clear = counts,
-		.levels = data_levels(table, table->wiring.line.outputs == OUTPUTS_REGISTERED ? table->pins[0] : at_rest),
+		.step = two && stage == STAGE_LINE && registered && table->timeline->types[first->type].cells == 1,
+		.levels = data_levels(table, stage, registered ? table->pins[0] : at_rest),
 	};
+}
+
+static bool choose_loop(struct table *table, struct diagnostics *diagnostics)
+{
+	struct faults faults = {.count = 0};
+	table->state_of_cell = arena_array(table->arena, table->timeline->cell_count, sizeof *table->state_of_cell);
+	if (table->state_of_cell == NULL)
+		return report_memory(table->timeline->plan, diagnostics);
+	if (choose_states(table, &faults))
+		return true;
+	faults_report(&faults, table->timeline, table->pins, diagnostics);
+	return false;
 }
 
 // True if everything went well; otherwise the faults or lack of memory are reported.
 static bool fill_table(struct table *table, struct arena *scratch, struct diagnostics *diagnostics)
 {
 	const struct plan *plan = table->timeline->plan;
-	struct faults faults = {.count = 0};
 	table->wiring = wiring_of(plan);
 	table->pins = timeline_pins(table->timeline, table->arena);
-	table->state_of_cell = arena_array(table->arena, table->timeline->cell_count, sizeof *table->state_of_cell);
-	if (table->pins == NULL || table->state_of_cell == NULL)
+	if (table->pins == NULL)
 		return report_memory(plan, diagnostics);
-	if (!choose_states(table, &faults)) {
-		faults_report(&faults, table->timeline, diagnostics);
+	if (!(plan->machine.form == FORM_LOOP ? choose_loop(table, diagnostics) : line_frame_fill(table, scratch, diagnostics)))
 		return false;
-	}
 	if (!fill_codes(table, scratch))
 		return report_memory(plan, diagnostics);
-	table->spare = spare_row(table);
+	for (unsigned stage = 0; stage < machine_stages(&plan->machine); stage++)
+		table->spare[stage] = spare_row(table, (enum stage)stage);
 	return true;
 }
 
@@ -184,14 +215,60 @@ void table_destroy(struct table *table)
 		arena_destroy(table->arena);
 }
 
-struct row table_row(const struct table *table, uint32_t cell)
+static struct row loop_row(const struct table *table, uint32_t cell)
 {
 	const uint32_t frame_next = (cell + 1) % table->timeline->cell_count;
 	const uint32_t next = (cell + 1) % table->period;
 	const bool counts = table->wiring.line.advance == ADVANCE_COUNT;
+	const bool registered = table->wiring.line.outputs == OUTPUTS_REGISTERED;
 	return (struct row){
 		.next = counts ? 0 : table->state_of_cell[next],
 		.clear = counts && table->wiring.line.clear == CLEAR_SYNC && next == 0,
-		.levels = data_levels(table, table->pins[table->wiring.line.outputs == OUTPUTS_REGISTERED ? frame_next : cell]),
+		.levels = data_levels(table, STAGE_LINE, table->pins[registered ? frame_next : cell]),
 	};
+}
+
+uint32_t table_row_count(const struct table *table, enum stage stage)
+{
+	if (stage == STAGE_LINE)
+		return table->period;
+	return table->wiring.form == FORM_LOOP ? 0 : table->timeline->line_count;
+}
+
+uint32_t table_row_address(const struct table *table, enum stage stage, uint32_t index)
+{
+	if (stage == STAGE_FRAME)
+		return index;
+	return table->wiring.form == FORM_LOOP ? table->state_of_cell[index] : line_row_address(table, index);
+}
+
+struct row table_row(const struct table *table, enum stage stage, uint32_t index)
+{
+	if (table->wiring.form == FORM_LOOP)
+		return loop_row(table, index);
+	return stage == STAGE_LINE ? line_stage_row(table, index) : frame_stage_row(table, index);
+}
+
+bool table_uses_kind(const struct table *table, uint32_t kind)
+{
+	if (table->wiring.form == FORM_LOOP)
+		return kind == 0;
+	return kind < table->timeline->plan->line_count && table->line_of_type[kind] != NO_LINE;
+}
+
+struct row table_spare(const struct table *table, enum stage stage, uint32_t kind)
+{
+	struct row row = table->spare[stage];
+	// A line of a kind that should not be ends at once, so that the frame stage moves on.
+	if (stage == STAGE_LINE && !table_uses_kind(table, kind))
+		row.step = true;
+	return row;
+}
+
+uint32_t table_cell_row(const struct table *table, uint32_t line, uint32_t cell)
+{
+	const struct frame_line *in_frame = &table->timeline->lines[line];
+	if (table->wiring.form == FORM_LOOP)
+		return (in_frame->first_cell + cell) % table->period;
+	return table->first_row[in_frame->type] + cell;
 }

@@ -144,6 +144,10 @@ check_orphans() {
 		name=$(basename "${path%.*}")
 		[ -e "$work/$1/$name.yaml" ] || [ -e "$work/$1/$name.args" ] || fail "$1/$(basename "$path") belongs to no case"
 	done
+	for path in "$work/$1"/*/; do
+		name=$(basename "$path")
+		[ ! -d "$path" ] || [ -e "$work/$1/${name%.yaml}.yaml" ] || fail "$1/$name/ belongs to no case"
+	done
 }
 
 # for_cases FOLDER FUNCTION …: there must be cases, and each function is called for each.

@@ -211,6 +211,36 @@ static void a_cell_knows_its_place(void **state)
 	release(&laid);
 }
 
+// Sync and the stretch signal are asserted in all of line a. Load, a cell early at its pin, is asserted from cell 1 of a to cell
+// 0 of b, and so in all of a there. Mark, two cells late, is asserted at first nowhere, then over a.
+static void signals_of_whole_lines_suit_the_frame_stage(void **state)
+{
+	(void)state;
+	const char *form = "  a: { regions: [ { region: p, cells: 1, assert: [sync, late%s] }, { region: q, cells: 3, assert: [sync, late, load%s] } ] }\n"
+	                   "  b: { regions: [ { region: p, cells: 1, assert: [load] }, { region: q, cells: 3, assert: [%s] } ] }\n";
+	struct arena *arena = arena_create();
+	const struct {
+		const char *marks, *last;
+		uint64_t constant, suit;
+	} cases[] = {
+		{"", "", 0xF, 0xD},             // all of them; not the stretch signal, 1
+		{", mark", "", 0x7, 0x5},       // mark changes in the middle of a and of b at its pin
+		{"", "sync, late", 0xC, 0xC},   // sync and late change within b
+		{"", "load", 0xB, 0x9},         // at its pin load goes off in the last cell of b
+	};
+	for (size_t index = 0; index < sizeof cases / sizeof *cases; index++) {
+		struct laid laid = lay("", arena_format(arena, form, cases[index].marks, cases[index].marks, cases[index].last),
+		                       "  - { repeat: 1, line: a }\n  - { repeat: 1, line: b }\n");
+		assert_laid(&laid);
+		const uint64_t *pins = timeline_pins(laid.timeline, arena);
+		assert_non_null(pins);
+		assert_int_equal(timeline_line_signals(laid.timeline, pins) & 0xF, cases[index].constant);
+		assert_int_equal(signals_for_frame(laid.timeline, pins), cases[index].suit);
+		release(&laid);
+	}
+	arena_destroy(arena);
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
@@ -222,6 +252,7 @@ int main(void)
 		cmocka_unit_test(the_period_divides_the_frame),
 		cmocka_unit_test(holds_of_all_laps_are_folded),
 		cmocka_unit_test(a_cell_knows_its_place),
+		cmocka_unit_test(signals_of_whole_lines_suit_the_frame_stage),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }

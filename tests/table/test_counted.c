@@ -161,8 +161,8 @@ static void test_period(void **state)
 	}
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){0, 1}, 2);
-	assert_row(table_row(table, 0), 0, false, 1);
-	assert_row(table_row(table, 1), 0, true, 0);
+	assert_row(table_row(table, STAGE_LINE, 0), 0, false, 1);
+	assert_row(table_row(table, STAGE_LINE, 1), 0, true, 0);
 	bench_destroy(bench);
 }
 

@@ -16,13 +16,13 @@ static void test_registered(void **state)
 	bench_region(bench, "sync", 2, SIGNAL(blank) | SIGNAL(sync));
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){0, 1, 2, 7, 4, 5}, 6);
-	assert_row(table_row(table, 0), 1, false, 1); // cell 1, picture: sync high (at rest), blank low
-	assert_row(table_row(table, 1), 2, false, 1); // cell 2, picture
-	assert_row(table_row(table, 2), 7, false, 3); // cell 3, porch: sync high, blank high
-	assert_row(table_row(table, 3), 4, false, 2); // cell 4, sync: sync low, blank high
-	assert_row(table_row(table, 4), 5, false, 2); // cell 5, sync
-	assert_row(table_row(table, 5), 0, false, 1); // back to cell 0, picture
-	assert_row(table->spare, 0, false, 1);        // leads to cell 0, with its signals
+	assert_row(table_row(table, STAGE_LINE, 0), 1, false, 1); // cell 1, picture: sync high (at rest), blank low
+	assert_row(table_row(table, STAGE_LINE, 1), 2, false, 1); // cell 2, picture
+	assert_row(table_row(table, STAGE_LINE, 2), 7, false, 3); // cell 3, porch: sync high, blank high
+	assert_row(table_row(table, STAGE_LINE, 3), 4, false, 2); // cell 4, sync: sync low, blank high
+	assert_row(table_row(table, STAGE_LINE, 4), 5, false, 2); // cell 5, sync
+	assert_row(table_row(table, STAGE_LINE, 5), 0, false, 1); // back to cell 0, picture
+	assert_row(table_spare(table, STAGE_LINE, 0), 0, false, 1);        // leads to cell 0, with its signals
 	assert_valid(bench);
 	bench_destroy(bench);
 }
@@ -40,12 +40,12 @@ static void test_direct(void **state)
 	bench_region(bench, "porch", 1, SIGNAL(blank));
 	bench_region(bench, "sync", 2, SIGNAL(blank) | SIGNAL(sync));
 	const struct table *table = bench_table(bench);
-	assert_row(table_row(table, 0), 1, false, 1); // picture: sync high, blank low
-	assert_row(table_row(table, 2), 7, false, 1); // picture
-	assert_row(table_row(table, 3), 4, false, 3); // porch
-	assert_row(table_row(table, 4), 5, false, 2); // sync
-	assert_row(table_row(table, 5), 0, false, 2); // sync
-	assert_row(table->spare, 0, false, 3);        // at rest, but blanked: sync high, blank high
+	assert_row(table_row(table, STAGE_LINE, 0), 1, false, 1); // picture: sync high, blank low
+	assert_row(table_row(table, STAGE_LINE, 2), 7, false, 1); // picture
+	assert_row(table_row(table, STAGE_LINE, 3), 4, false, 3); // porch
+	assert_row(table_row(table, STAGE_LINE, 4), 5, false, 2); // sync
+	assert_row(table_row(table, STAGE_LINE, 5), 0, false, 2); // sync
+	assert_row(table_spare(table, STAGE_LINE, 0), 0, false, 3);        // at rest, but blanked: sync high, blank high
 	bench_destroy(bench);
 }
 
@@ -65,11 +65,11 @@ static void test_lead(void **state)
 	assert_int_equal(table->pins[1], 0);
 	assert_int_equal(table->pins[2], SIGNAL(mute)); // the timeline had it at cell 1
 	assert_int_equal(table->pins[3], 0);
-	assert_row(table_row(table, 0), 1, false, 0); // the pins of cell 1
-	assert_row(table_row(table, 1), 2, false, 2); // the pins of cell 2: mute
-	assert_row(table_row(table, 2), 3, false, 0);
-	assert_row(table_row(table, 3), 0, false, 1); // the pins of cell 0: load
-	assert_row(table->spare, 0, false, 1);
+	assert_row(table_row(table, STAGE_LINE, 0), 1, false, 0); // the pins of cell 1
+	assert_row(table_row(table, STAGE_LINE, 1), 2, false, 2); // the pins of cell 2: mute
+	assert_row(table_row(table, STAGE_LINE, 2), 3, false, 0);
+	assert_row(table_row(table, STAGE_LINE, 3), 0, false, 1); // the pins of cell 0: load
+	assert_row(table_spare(table, STAGE_LINE, 0), 0, false, 1);
 	bench_destroy(bench);
 }
 
@@ -89,11 +89,11 @@ static void test_field_signal(void **state)
 	bench_region(bench, "porch", 2, SIGNAL(blank));
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){0, 2, 4, 7, 6}, 5);
-	assert_row(table_row(table, 0), 2, false, 0);
-	assert_row(table_row(table, 1), 4, false, 1); // burst is asserted in cell 2; blank is no data signal
-	assert_row(table_row(table, 2), 7, false, 0);
-	assert_row(table_row(table, 4), 0, false, 0);
-	assert_row(table->spare, 0, false, 0);
+	assert_row(table_row(table, STAGE_LINE, 0), 2, false, 0);
+	assert_row(table_row(table, STAGE_LINE, 1), 4, false, 1); // burst is asserted in cell 2; blank is no data signal
+	assert_row(table_row(table, STAGE_LINE, 2), 7, false, 0);
+	assert_row(table_row(table, STAGE_LINE, 4), 0, false, 0);
+	assert_row(table_spare(table, STAGE_LINE, 0), 0, false, 0);
 	assert_codes(table, blank, (const uint32_t[]){1}, 1);
 	assert_null(table->codes[burst]);
 	assert_valid(bench);
@@ -129,8 +129,8 @@ static void test_period(void **state)
 	}
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){0, 1}, 2);
-	assert_row(table_row(table, 0), 1, false, 1);
-	assert_row(table_row(table, 1), 0, false, 0);
+	assert_row(table_row(table, STAGE_LINE, 0), 1, false, 1);
+	assert_row(table_row(table, STAGE_LINE, 1), 0, false, 0);
 	bench_destroy(bench);
 }
 
@@ -143,7 +143,7 @@ static void test_one_cell(void **state)
 	bench_region(bench, "all", 4, SIGNAL(on));
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){0}, 1);
-	assert_row(table_row(table, 0), 0, false, 1);
+	assert_row(table_row(table, STAGE_LINE, 0), 0, false, 1);
 	bench_destroy(bench);
 }
 
@@ -160,9 +160,9 @@ static void test_hold_and_start(void **state)
 	bench_hold(bench, at, 0, 1);
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){7, 3, 4, 0, 1, 2}, 6);
-	assert_row(table_row(table, 2), 0, false, 0); // from the porch into the picture at state 0
-	assert_row(table_row(table, 5), 7, false, 1); // and back to the start
-	assert_row(table->spare, 7, false, 1);
+	assert_row(table_row(table, STAGE_LINE, 2), 0, false, 0); // from the porch into the picture at state 0
+	assert_row(table_row(table, STAGE_LINE, 5), 7, false, 1); // and back to the start
+	assert_row(table_spare(table, STAGE_LINE, 0), 7, false, 1);
 	assert_valid(bench);
 	bench_destroy(bench);
 }
@@ -179,10 +179,10 @@ static void test_count_sync(void **state)
 	bench_region(bench, "sync", 1, SIGNAL(sync));
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){0, 1, 2, 3, 4}, 5);
-	assert_row(table_row(table, 0), 0, false, 0);
-	assert_row(table_row(table, 3), 0, false, 1); // cell 4 is sync
-	assert_row(table_row(table, 4), 0, true, 0);  // the last: clear, and cell 0 follows
-	assert_row(table->spare, 0, true, 0);         // states 5 to 7
+	assert_row(table_row(table, STAGE_LINE, 0), 0, false, 0);
+	assert_row(table_row(table, STAGE_LINE, 3), 0, false, 1); // cell 4 is sync
+	assert_row(table_row(table, STAGE_LINE, 4), 0, true, 0);  // the last: clear, and cell 0 follows
+	assert_row(table_spare(table, STAGE_LINE, 0), 0, true, 0);         // states 5 to 7
 	bench_destroy(bench);
 }
 
@@ -196,8 +196,8 @@ static void test_count_sync_full(void **state)
 	bench_region(bench, "line", 3, 0);
 	bench_region(bench, "sync", 1, SIGNAL(sync));
 	const struct table *table = bench_table(bench);
-	assert_row(table_row(table, 2), 0, false, 1);
-	assert_row(table_row(table, 3), 0, true, 0);
+	assert_row(table_row(table, STAGE_LINE, 2), 0, false, 1);
+	assert_row(table_row(table, STAGE_LINE, 3), 0, true, 0);
 	bench_destroy(bench);
 }
 
@@ -216,9 +216,9 @@ static void test_count_async(void **state)
 	bench_region(bench, "sync", 1, SIGNAL(sync) | SIGNAL(blank));
 	const struct table *table = bench_table(bench);
 	assert_states(table, (const uint32_t[]){0, 1, 2}, 3);
-	assert_row(table_row(table, 0), 0, false, 0);
-	assert_row(table_row(table, 2), 0, false, 3);
-	assert_row(table->spare, 0, true, 2); // state 3, one past the last
+	assert_row(table_row(table, STAGE_LINE, 0), 0, false, 0);
+	assert_row(table_row(table, STAGE_LINE, 2), 0, false, 3);
+	assert_row(table_spare(table, STAGE_LINE, 0), 0, true, 2); // state 3, one past the last
 	bench_destroy(bench);
 }
 

@@ -66,6 +66,9 @@ put right/bad/several-faults.yaml 'printf "x: error: a [bad-name]\n    x [y]\nx:
 put right/bad/several-faults.stderr 'x: error: a [bad-name]
     x [y]
 x: error: b [bad-bits]'
+put right/bad/bank-plan.yaml '. ./bank-plan/tide.yaml'
+put right/bad/bank-plan/tide.yaml 'echo "bank-plan/tide.yaml:1:1: error: no plan [bank-plan]" >&2; exit 2'
+put right/bad/bank-plan.stderr 'bank-plan/tide.yaml:1:1: error: no plan [bank-plan]'
 same 'cases that are right' '' "$(failures right)"
 same 'rules without a case are named' 'FAILED: rule yaml-tag has no bad plan that breaks it and only it' \
 	"$(SCANLATCH=$folder/player PLAN_CASES=$folder/right tests/command/plans.sh | grep 'rule yaml-tag ')"
@@ -146,7 +149,9 @@ put bad/bad/not-yet.stderr 'x: error: y [not-yet]'
 put bad/bad/several-rules.yaml 'echo "x: error: y [bad-name]" >&2; exit 2'
 put bad/bad/several-rules.stderr 'x: error: y [bad-name]'
 put bad/bad/lost.exit '1'
+put bad/bad/adrift/tide.yaml ''
 same 'bad plans that are not right' 'FAILED: bad/lost.exit belongs to no case
+FAILED: bad/adrift/ belongs to no case
 FAILED: bad-bits: exit status 0, wanted 2
 FAILED: bad-code crashed, status 134
 FAILED: bad-name: no bad-name.stderr (tools/expect-bad writes it for you to read)

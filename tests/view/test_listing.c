@@ -5,6 +5,8 @@
 #include <stdint.h>
 #include <cmocka.h>
 
+#include <string.h>
+
 #include "base/text.h"
 #include "catalogue/catalogue.h"
 #include "image/image.h"
@@ -63,7 +65,7 @@ static void fill_bench(struct bench *bench)
 	bench->images[0] = (struct image){.bytes = bench->narrow_bytes, .length = 4};
 	bench->images[1] = (struct image){.bytes = bench->wide_bytes, .length = 8};
 	bench->table = (struct table){.timeline = &bench->timeline, .wiring = wiring_of(&bench->plan), .period = 2,
-	                              .state_of_cell = bench->states, .pins = bench->pins, .spare = {.next = 1, .levels = 0}};
+	                              .state_of_cell = bench->states, .pins = bench->pins, .spare = {{.next = 1, .levels = 0}}};
 }
 
 // Registered: row 1 (cell 0) holds sync of cell 1, not asserted and so high; row 2 that of cell 0, low.
@@ -109,11 +111,74 @@ static void direct_outputs(void **state)
 	text_release(&text);
 }
 
+// The same chips on two stages: U1 reads the line stage's state (A0) and kind (A1), U2 the frame stage's state. Two lines: "only",
+// kind 0, of two cells, then "other", kind 1, of one. Direct line stage, latched frame stage. The gate is the frame stage's data.
+static void two_stages(void **state)
+{
+	(void)state;
+	struct bench bench;
+	struct text text = {0};
+	fill_bench(&bench);
+	struct line_type types[2] = {bench.line_type, {.name = "other", .regions = &bench.region, .region_count = 1}};
+	struct laid_line laid[2] = {bench.type, {.cells = 1, .region_of_cell = bench.region_of_cell}};
+	struct frame_line lines[2] = {{.type = 0}, {.type = 1, .first_cell = 2}};
+	uint32_t first_row[3] = {0, 2, 3}, line_of_type[2] = {0, 1}, states[3] = {0, 1, 0};
+	uint64_t pins[3] = {0, 1, 2}; // sync in cell 1, the gate in line 1
+	bench.plan.lines = types;
+	bench.plan.line_count = 2;
+	bench.plan.machine.form = FORM_LINE_FRAME;
+	bench.plan.machine.line = (struct stage_plan){.state_bits = 1, .outputs = OUTPUTS_DIRECT};
+	bench.plan.machine.frame = (struct stage_plan){.state_bits = 2};
+	bench.plan.machine.kind_bits = 1;
+	bench.signals[1] = (struct signal){.name = "gate", .active_high = true, .stage = STAGE_FRAME};
+	bench.chips[0].address[1] = (struct address_wire){ADDRESS_KIND, 0};
+	bench.chips[1].stage = STAGE_FRAME;
+	bench.timeline.types = laid;
+	bench.timeline.lines = lines;
+	bench.timeline.line_count = 2;
+	bench.timeline.cell_count = 3;
+	bench.table = (struct table){.timeline = &bench.timeline, .wiring = wiring_of(&bench.plan), .period = 3, .state_of_cell = states,
+	                             .pins = pins, .first_row = first_row, .line_of_type = line_of_type};
+	view_listing(&text, &bench.table, bench.images);
+	assert_string_equal(text_string(&text),
+		"# bench: every row of the frame\n"
+		"# the line stage:\n"
+		"# line type, line, cell, region, state, kind, word (next state, step, then the levels of sync), then address:byte in U1\n"
+		"# levels are electrical, 1 is high; outputs are direct: those in a row are the pins of its own cell\n"
+		"\"only\" 0 0 \"all\" 0 0  1 0 1  0:10\n"
+		"\"only\" 0 1 \"all\" 1 0  0 1 0  1:12\n"
+		"\"other\" 1 0 \"all\" 0 1  0 1 1  2:11\n"
+		"# row of the 1 state of the frame's kinds that the frame does not use:\n"
+		"spare 1 1  0 0 0  3:13\n"
+		"# the frame stage:\n"
+		"# line type, line, state, word (next state, kind, then the levels of gate), then address:word in U2\n"
+		"# levels are electrical, 1 is high; they and kind are latched at the end of a line: those in a row are the pins of the next line\n"
+		"\"only\" 0 0  1 1 1  0:A020\n"
+		"\"other\" 1 1  0 0 0  1:A121\n"
+		"# the 2 states that are not on the frame have this row:\n"
+		"spare 2  0 0 0  2:A222\n");
+	text_release(&text);
+	// With a third kind bit's worth of other kinds, and counters: step and clear stand for the next states.
+	bench.plan.machine.kind_bits = 2;
+	bench.plan.machine.line.advance = bench.plan.machine.frame.advance = ADVANCE_COUNT;
+	bench.chips[0].address[0] = (struct address_wire){ADDRESS_KIND, 0};
+	bench.chips[0].address[1] = (struct address_wire){ADDRESS_KIND, 1};
+	bench.table.wiring = wiring_of(&bench.plan);
+	view_listing(&text, &bench.table, bench.images);
+	assert_non_null(strstr(text_string(&text), "state, kind, word (step, clear, then the levels of sync), then"));
+	assert_non_null(strstr(text_string(&text), "\"only\" 0 1 \"all\" 1 0  1 1 0  0:10\n"));
+	assert_non_null(strstr(text_string(&text), "# row of the 4 states of all other kinds, which ends the line:\nspare 0 2  1 0 0  2:11\n"));
+	assert_non_null(strstr(text_string(&text), "state, word (kind, clear, then the levels of gate), then"));
+	assert_non_null(strstr(text_string(&text), "\"other\" 1 1  0 1 0  1:A121\n"));
+	text_release(&text);
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
 		cmocka_unit_test(registered_outputs),
 		cmocka_unit_test(direct_outputs),
+		cmocka_unit_test(two_stages),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -1,0 +1,65 @@
+#include "base/arena.h"
+#include "catalogue/catalogue.h"
+#include "library/library.h"
+
+static struct plan *load_bank(struct plan_set *plans, const struct catalogue *catalogue, size_t bank, scanlatch_messages *messages)
+{
+	const struct set *set = plans->set;
+	const char *path = set_bank_path(messages->names, set, bank);
+	const size_t errors_before = diagnostics_error_count(messages->diagnostics);
+	char *bytes = NULL;
+	size_t length = 0;
+	const struct source *source = NULL;
+	if (path != NULL && read_plan_file(plans->arena, path, &bytes, &length, messages))
+		source = keep_source(messages->names, path, bytes, length);
+	if (source != NULL)
+		return plan_read_for_set(source, catalogue, set, bank, messages->diagnostics);
+	if (diagnostics_error_count(messages->diagnostics) == errors_before)
+		diagnose(messages->diagnostics, RULE_OUT_OF_MEMORY, (struct place){set->source, 0, 0}, "memory is out");
+	else
+		diagnose_also(messages->diagnostics, set->banks[bank].place, "bank %u of the set", set->banks[bank].number);
+	return NULL;
+}
+
+// Every bank is read, so that all that is wrong is told.
+static bool load_banks(struct plan_set *plans, scanlatch_messages *messages)
+{
+	const struct catalogue *catalogue = catalogue_load(plans->arena, messages->diagnostics);
+	bool good = catalogue != NULL;
+	for (size_t bank = 0; catalogue != NULL && bank < plans->set->bank_count; bank++) {
+		plans->plans[bank] = load_bank(plans, catalogue, bank, messages);
+		good = good && plans->plans[bank] != NULL;
+	}
+	return good && set_plans_agree(plans->set, (const struct plan *const *)plans->plans, messages->diagnostics);
+}
+
+struct plan_set *plan_set_load(const char *name, const char *bytes, size_t length, scanlatch_messages *messages)
+{
+	const struct source *source = keep_source(messages->names, name, bytes, length);
+	struct arena *arena = arena_create();
+	struct plan_set *plans = arena != NULL ? arena_alloc(arena, sizeof *plans) : NULL;
+	if (source == NULL || plans == NULL) {
+		diagnose(messages->diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
+		arena_destroy(arena);
+		return NULL;
+	}
+	plans->arena = arena;
+	plans->set = set_read(source, messages->diagnostics);
+	plans->plans = plans->set != NULL ? arena_array(arena, plans->set->bank_count, sizeof(struct plan *)) : NULL;
+	if (plans->set != NULL && plans->plans == NULL)
+		diagnose(messages->diagnostics, RULE_OUT_OF_MEMORY, (struct place){source, 0, 0}, "memory is out");
+	if (plans->plans != NULL && load_banks(plans, messages))
+		return plans;
+	plan_set_destroy(plans);
+	return NULL;
+}
+
+void plan_set_destroy(struct plan_set *plans)
+{
+	if (plans == NULL)
+		return;
+	for (size_t bank = 0; plans->plans != NULL && bank < plans->set->bank_count; bank++)
+		plan_destroy(plans->plans[bank]);
+	set_destroy(plans->set);
+	arena_destroy(plans->arena);
+}
