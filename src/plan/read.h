@@ -105,8 +105,8 @@ bool read_file_stem(struct reader *reader, const struct node *node, const char *
 const char *read_note(struct reader *reader, const struct node *node);
 // True if a document is a set. Cannot fail.
 bool node_is_set(const struct node *root);
-// A path without its folders, printable as messages have it: a file's name may be any bytes, but JSON is UTF-8 (RFC 8259, section 8.1).
-// In the arena; NULL when memory is out.
+// A path without its folders, printable as messages have it: a file's name may be any bytes, but JSON is UTF-8 (RFC 8259,
+// section 8.1). In the arena; NULL when memory is out.
 const char *printable_base_name(struct arena *arena, const char *path);
 
 // The parts of a plan. Each reports its errors and leaves defaults where it found any.

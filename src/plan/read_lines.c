@@ -166,8 +166,8 @@ static bool check_variables(struct reader *reader, const struct hold *hold)
 	diagnose(reader->diagnostics, RULE_BAD_EXPRESSION, hold->place,
 	         "expression \"%s\": wanted no variables but cell and col in a line-frame machine, found \"%s\"", hold->text,
 	         variable_name(line ? VARIABLE_LINE : VARIABLE_ROW));
-	diagnose_hint(reader->diagnostics, "all lines of a type have the same states in the line stage: what differs from line to line is the "
-	                                   "frame stage's");
+	diagnose_hint(reader->diagnostics, "all lines of a type have the same states in the line stage: what differs from line to line"
+	                                   " is the frame stage's");
 	return false;
 }
 

@@ -173,7 +173,9 @@ struct plan *plan_read_for_set(const struct source *source, const struct catalog
 	struct plan *plan = make_plan(source, diagnostics);
 	if (plan == NULL)
 		return NULL;
-	struct reader reader = {.arena = plan->arena, .plan = plan, .catalogue = catalogue, .diagnostics = diagnostics, .set = set, .bank = bank};
+	struct reader reader = {.arena = plan->arena, .plan = plan, .catalogue = catalogue, .diagnostics = diagnostics};
+	reader.set = set;
+	reader.bank = bank;
 	reader.set_bits = plan->bank_bits = set != NULL ? set->bank_bits : 0;
 	const struct node *root = document_parse(plan->arena, source, diagnostics);
 	if (root != NULL)

@@ -72,7 +72,8 @@ static int compare_banks(const void *left, const void *right)
 }
 
 // "0" and "0x0" are different keys but the same bank.
-static bool is_first_of_number(struct reader *reader, const struct node *key, const struct set_bank *banks, const struct set_bank *bank)
+static bool is_first_of_number(struct reader *reader, const struct node *key, const struct set_bank *banks,
+                               const struct set_bank *bank)
 {
 	for (const struct set_bank *other = banks; other < bank; other++)
 		if (other->number == bank->number) {

@@ -386,7 +386,9 @@ static const struct node *list_of(const struct node *chips, size_t chip, const c
 // "any chip", or of which stage's chips where there are two.
 static const char *any_chip(const struct plan *plan, enum stage stage)
 {
-	return plan->machine.form == FORM_LOOP ? "any chip" : stage == STAGE_LINE ? "any chip of the line stage" : "any chip of the frame stage";
+	if (plan->machine.form == FORM_LOOP)
+		return "any chip";
+	return stage == STAGE_LINE ? "any chip of the line stage" : "any chip of the frame stage";
 }
 
 static void hint_missing_data(struct reader *reader, enum stage stage)
@@ -445,9 +447,10 @@ static void report_missing_data(struct reader *reader, const struct node *chips,
 	         data_wire_name(plan, wire, name), any_chip(plan, stage));
 	if (found)
 		diagnose_hint(reader->diagnostics, "D%u of chip \"%s\" is open", open->pin++, plan->chips[chip].label);
+	else if (plan->machine.form == FORM_LOOP)
+		diagnose_hint(reader->diagnostics, "no data pin is left open: add a chip");
 	else
-		diagnose_hint(reader->diagnostics, "no data pin is left open: add a chip%s%s", plan->machine.form == FORM_LOOP ? "" : " with stage: ",
-		              plan->machine.form == FORM_LOOP ? "" : stage_name(stage));
+		diagnose_hint(reader->diagnostics, "no data pin is left open: add a chip with stage: %s", stage_name(stage));
 }
 
 static void check_banks_wired(struct reader *reader, const struct node *chips)

@@ -157,7 +157,16 @@ static void test_limits_are_within(void **state)
 	struct plan *feedback = read_text(reading, plan_text(reading, 5, two_signals,
 	                                                     "form: line-frame, line: { state: 11 bits }, frame: { state: 11 bits }",
 	                                                     "{ line: { part: W }, frame: { part: W } }", parts));
+	// Direct outputs of the frame stage hold no kind: 12 + 1 + 13 bits; those of the line stage no step: 11 + 3 + 12.
+	struct plan *no_kind = read_text(reading, plan_text(reading, 5, two_signals,
+	                                                    "form: line-frame, line: { state: 12 bits }, frame: { state: 13 bits, outputs: direct }",
+	                                                    "{ line: { part: W }, frame: { part: W } }", parts));
+	struct plan *no_step = read_text(reading, plan_text(reading, 5, two_signals,
+	                                                    "form: line-frame, line: { state: 11 bits, outputs: direct }, frame: { state: 12 bits }",
+	                                                    "{ line: { part: W }, frame: { part: W } }", parts));
 	assert_int_equal(address->machine.kind_bits, 4);
+	plan_destroy(no_kind);
+	plan_destroy(no_step);
 	plan_destroy(address);
 	plan_destroy(feedback);
 	end_reading(reading);
