@@ -159,8 +159,8 @@ static void test_short_in_a_kind(void **state)
 	struct drawn *drawn = draw_both("  line: { state: 3 bits }\n  frame: { state: 2 bits }\n  fields: { top: 2..1 }\n", NULL, "{ region: a, cells: 2 }",
 	                                "{ region: a, cells: 1 }, { region: b, cells: 3, hold: { top: 3 } }");
 	assert_refused(drawn, RULE_STATES_SHORT, 1);
-	assert_says(drawn, "line type \"mole\", cell 3, region \"b\": 3 states needed for this cell and those that compete with it under the hold of "
-	                   "\"top\", 2 available");
+	assert_says(drawn, "line type \"mole\", cell 3, region \"b\": 3 states needed for this cell and those that compete with it, 2 available "
+	                   "under the hold of \"top\"");
 	drawn_destroy(drawn);
 	drawn = draw_both("  line: { state: 3 bits }\n  frame: { state: 2 bits }\n  fields: { at: 2..0 }\n", NULL, "{ region: a, cells: 2 }",
 	                  "{ region: a, cells: 1 }, { region: b, cells: 2, hold: { at: 5 } }");
@@ -171,7 +171,7 @@ static void test_short_in_a_kind(void **state)
 	drawn = draw_both("  line: { state: 3 bits }\n  frame: { state: 2 bits }\n  fields: { top: 2 }\n", "[1]", "{ region: a, cells: 6 }",
 	                  "{ region: a, cells: 2 }");
 	assert_refused(drawn, RULE_STATES_SHORT, 1);
-	assert_says(drawn, "6 states needed for this cell and those that compete with it under the codes of \"top\", 4 available");
+	assert_says(drawn, "6 states needed for this cell and those that compete with it, 4 available under the codes of \"top\"");
 	drawn_destroy(drawn);
 }
 
