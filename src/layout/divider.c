@@ -156,7 +156,8 @@ static void report_subcarrier(const struct clock *clock, const struct divider_ta
 	         "in step with normal cells, is cut short by stretched ones",
 	         clock->stretch_ticks, plural(clock->stretch_ticks), cycles.numerator, cycles.denominator);
 	diagnose_hint(diagnostics,
-	              "give the subcarrier a divider of its own, by %" PRId64 ", or make stretch a multiple of %" PRId64 " ticks", period, subcarrier->step_ticks);
+	              "give the subcarrier a divider of its own, by %" PRId64 ", or make stretch a multiple of %" PRId64 " ticks",
+	              period, subcarrier->step_ticks);
 }
 
 void divider_report(const struct clock *clock, bool stretched, struct diagnostics *diagnostics)

@@ -52,7 +52,10 @@ static void put_row(struct text *out, const struct divider_view *view, const cha
 			break;
 		text_put_repeated(out, ' ', span_width(span) - (out->length - before));
 		const char *separator = span[1].stretched && !span->stretched ? " | " : " .. ";
-		text_put(out, tap != NULL ? separator : "    " + (4 - strlen(separator)));
+		if (tap != NULL)
+			text_put(out, separator);
+		else
+			text_put_repeated(out, ' ', strlen(separator));
 	}
 	text_put(out, "\n");
 }
