@@ -7,9 +7,9 @@
 static const char help[] =
 	"Usage: scanlatch check [options] PLAN...\n"
 	"\n"
-	"Reads plans, lays out their lines and reports lengths, positions, roundings, wiring, colour and speed.\n"
-	"A plan for whose cells no states can be found is an error here too. Writes no images. PLAN may be -\n"
-	"for standard input.\n"
+	"Reads plans, lays out their lines and reports the tick divider, lengths, positions, roundings,\n"
+	"wiring, colour and speed. A plan for whose cells no states can be found is an error here too. Writes\n"
+	"no images. PLAN may be - for standard input.\n"
 	"\n"
 	"Options:\n"
 	"      --json         one JSON document instead of text (a list of them for several plans)\n"

@@ -3,6 +3,7 @@
 #include <string.h>
 
 #include "base/arena.h"
+#include "layout/divider.h"
 
 static bool report_memory(const struct plan *plan, struct diagnostics *diagnostics)
 {
@@ -71,13 +72,21 @@ static bool lay_frame(struct timeline *timeline, struct diagnostics *diagnostics
 	return true;
 }
 
+static bool has_stretched_cells(const struct timeline *timeline)
+{
+	return timeline->tick_count > timeline->cell_count * timeline->plan->clock.cell_ticks;
+}
+
 static bool lay_out(struct timeline *timeline, struct diagnostics *diagnostics)
 {
 	struct line_faults *faults = line_faults_create(timeline->arena, diagnostics);
 	if (faults == NULL)
 		return report_memory(timeline->plan, diagnostics);
-	const bool good = lay_types(timeline, faults, diagnostics) && measure_frame(timeline, diagnostics) &&
-	                  lay_frame(timeline, diagnostics) && layout_holds(timeline, faults, diagnostics);
+	const bool framed = lay_types(timeline, faults, diagnostics) && measure_frame(timeline, diagnostics) &&
+	                    lay_frame(timeline, diagnostics);
+	if (framed)
+		divider_report(&timeline->plan->clock, has_stretched_cells(timeline), diagnostics);
+	const bool good = framed && layout_holds(timeline, faults, diagnostics);
 	line_faults_report(faults);
 	return good;
 }

@@ -44,6 +44,8 @@ struct clock {
 	enum phase_kind phase;         // PHASE_FREE where no subcarrier or no demand
 	int64_t phase_count;           // every N lines or frames; >= 1
 	struct place place;            // of `clock`
+	struct place cell_place;       // of the values; of `clock` where a key is left out
+	struct place stretch_place;
 	struct place phase_place;
 };
 

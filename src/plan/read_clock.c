@@ -163,6 +163,8 @@ void read_clock(struct reader *reader, const struct node *node)
 	bool dot_known = true;
 	if (values[CLOCK_DOT] != NULL)
 		dot_known = read_ticks(reader, values[CLOCK_DOT], "dot", 0, &clock->dot_ticks);
+	clock->cell_place = values[CLOCK_CELL] != NULL ? values[CLOCK_CELL]->place : node->place;
+	clock->stretch_place = values[CLOCK_STRETCH] != NULL ? values[CLOCK_STRETCH]->place : node->place;
 	if (values[CLOCK_CELL] != NULL && dot_known)
 		read_ticks(reader, values[CLOCK_CELL], "cell", clock->dot_ticks, &clock->cell_ticks);
 	if (values[CLOCK_STRETCH] != NULL && dot_known)

@@ -10,6 +10,7 @@
 #include "proof/proof.h"
 #include "view/chips.h"
 #include "view/columns.h"
+#include "view/divider.h"
 #include "view/figures.h"
 #include "view/proofs.h"
 
@@ -199,6 +200,8 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 	const bool good = uses != NULL && proofs != NULL;
 	if (good) {
 		put_head(out, plan);
+		text_put(out, "\n");
+		view_divider(out, &plan->clock);
 		for (size_t type = 0; type < plan->line_count; type++)
 			put_line(out, timeline, type, uses[type]);
 		put_frame(out, timeline);

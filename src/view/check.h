@@ -1,4 +1,4 @@
-// What a plan lays out: lines, regions, positions, roundings, frame, chips and their wiring, colour and speed.
+// What a plan lays out: the divider, lines, regions, positions, roundings, frame, chips and their wiring, colour and speed.
 #ifndef SCANLATCH_VIEW_CHECK_H
 #define SCANLATCH_VIEW_CHECK_H
 
@@ -16,6 +16,7 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 //   { "plan": { "name", "file", "crc32", "note" },
 //     "clock": { "master_hz", "master_mhz", "cell_ticks", "stretch_ticks", "dot_ticks", "accuracy_ppm" (if given),
 //                "subcarrier_hz", "subcarrier_mhz" (if given) },
+//     "divider": see view/divider.h,
 //     "lines": [ { "name", "cells", "ticks", "us", "stretched_cells", "used": lines of the frame,
 //                  "regions": [ { "name", "first_cell", "cells", "stretched_cells", "start_ticks", "start_us", "ticks", "us",
 //                                 "asked_ticks", "asked_us", "rounding_ticks", "rounding_us" (not of a fill),

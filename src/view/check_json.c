@@ -5,6 +5,7 @@
 #include "proof/proof.h"
 #include "view/check.h"
 #include "view/chips.h"
+#include "view/divider.h"
 #include "view/figures.h"
 #include "view/manifest.h"
 #include "view/proofs.h"
@@ -142,6 +143,7 @@ json_t *view_check_json(const struct timeline *timeline, bool *kept, bool *advic
 	json_t *object = json_object();
 	json_put(&object, "plan", plan_json(timeline->plan));
 	json_put(&object, "clock", clock_json(&timeline->plan->clock));
+	json_put(&object, "divider", view_divider_json(&timeline->plan->clock));
 	json_put(&object, "lines", lines_json(timeline));
 	json_put(&object, "frame", view_frame_json(timeline));
 	json_put(&object, "chips", view_chips_json(timeline->plan));

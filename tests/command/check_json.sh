@@ -14,6 +14,12 @@ value() { /usr/bin/python3 -c 'import json, sys; d = json.load(open(sys.argv[1])
 same "plan" "tide-board-60 tide-board-60.yaml" "$(value 'd["plan"]["name"] + " " + d["plan"]["file"]')"
 same "clock" "157500000/11 14.318182 1 9 3 50 39375000/11" "$(value '" ".join(str(d["clock"][key]) for key in
 	["master_hz", "master_mhz", "dot_ticks", "cell_ticks", "stretch_ticks", "accuracy_ppm", "subcarrier_hz"])')"
+# A cell is 9/4 cycles of the subcarrier, a stretched one 12/4.
+same "divider" "9 12 8 4 master divider 4 1/4 0 True" "$(value '" ".join(str(value) for value in
+	[d["divider"][key] for key in ["cell_counts", "stretched_cell_counts", "lengthens", "bits"]] + [d["divider"]["dot"]["from"]] +
+	[d["divider"]["subcarrier"][key] for key in ["from", "period_ticks", "cell_phase", "stretched_cell_phase", "in_step"]])')"
+same "counts" "0-8 HHLLHHLLH, 9-11 HLL" "$(value '", ".join("{first}-{last} {subcarrier}".format(**span) for span in
+	d["divider"]["sequence"])')"
 same "line types and their uses" "[('picture', 216), ('border', 43), ('vertical', 3)]" \
 	"$(value '[(line["name"], line["used"]) for line in d["lines"]]')"
 same "each line is 101 cells, one stretched, 912 ticks" "[(101, 1, '912', 63.695238)]" \
