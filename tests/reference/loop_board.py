@@ -179,4 +179,5 @@ def compare(path, trace_path, skip="0"):
 	print(f"{len(trace) - home} cells, {len(trace) - home - 1} of them with {len(plan.signals)} pins compared")
 
 
-{"make": make, "compare": compare}[sys.argv[1]](*sys.argv[2:])
+if __name__ == "__main__":
+	{"make": make, "compare": compare}[sys.argv[1]](*sys.argv[2:])

@@ -22,10 +22,12 @@ class Fault(Exception):
 
 
 class Chip:
-	"""label, pins of the part, and for each pin its wire: `state.3`, `low`, `next.0`, a signal's name, or None if open."""
+	"""label, stage, pins of the part, and for each pin its wire: `state.3`, `low`, `next.0`, a signal's name, or None if
+	open."""
 
-	def __init__(self, label, part, size, address, data):
+	def __init__(self, label, stage, part, size, address, data):
 		self.label = label
+		self.stage = stage
 		self.part = part
 		self.address_pins, self.data_pins = size
 		self.address = address + [None] * (self.address_pins - len(address))
@@ -48,23 +50,40 @@ def part_size(plan, part):
 	return PARTS[part]
 
 
-def word_bits(plan):
-	"""The bits of a row in the order in which straight wiring takes them."""
+def numbered(name, bits):
+	return [f"{name}.{bit}" for bit in range(bits)]
+
+
+def word_of(plan, stage, given):
+	"""The bits of a row in the order in which straight wiring takes them; given: those of kind or step."""
+	control = [] if stage.counted else numbered("next", stage.bits)
+	clear = ["clear"] if stage.counted else []
+	return control + given + clear + [signal.name for signal in plan.signals
+		if signal.field is None and stage.name in ("loop", signal.stage)]
+
+
+def stages_of(plan):
+	"""(name, wires of the address, word) of each stage."""
 	machine = plan.machine
-	control = ["clear"] if machine.counted else [f"next.{bit}" for bit in range(machine.bits)]
-	return control + [signal.name for signal in plan.signals if signal.field is None]
+	if machine.form == "loop":
+		return [("loop", numbered("state", machine.bits), word_of(plan, machine, []))]
+	kind = numbered("kind", machine.kind_bits)
+	return [("line", numbered("state", machine.line.bits) + kind, word_of(plan, machine.line, ["step"])),
+		("frame", numbered("state", machine.frame.bits), word_of(plan, machine.frame, kind))]
 
 
 def chips_of(plan):
 	tree = plan.tree["chips"]
 	if isinstance(tree, list):
-		return [Chip(chip["label"], chip["part"], part_size(plan, chip["part"]), wires(chip["address"]), wires(chip["data"]))
-			for chip in tree]
-	size = part_size(plan, tree["part"])
-	address = [f"state.{bit}" for bit in range(plan.machine.bits)]
-	bits = word_bits(plan)
-	return [Chip(f"rom{first // size[1]}", tree["part"], size, address, bits[first:first + size[1]])
-		for first in range(0, len(bits), size[1])]
+		return [Chip(chip["label"], chip.get("stage", "loop"), chip["part"], part_size(plan, chip["part"]),
+			wires(chip["address"]), wires(chip["data"])) for chip in tree]
+	chips = []
+	for stage, address, word in stages_of(plan):
+		part = tree["part"] if stage == "loop" else tree[stage]["part"]
+		size = part_size(plan, part)
+		chips += [Chip(f"rom{len(chips) + lane}", stage, part, size, address, word[first:first + size[1]])
+			for lane, first in enumerate(range(0, len(word), size[1]))]
+	return chips
 
 
 def wires(names):
@@ -98,45 +117,48 @@ def bank_count(chips):
 	return 1 << len({wire for chip in chips for wire in chip.address if wire and wire.startswith("bank.")})
 
 
-def state_addresses(chip, bits, bank=0):
-	"""The address that each state puts on the chip in that bank, tied pins at their level, open pins low."""
+def row_addresses(chip, names, bank=0):
+	"""The address that each row's number puts on the chip in that bank, tied pins at their level, open pins low. names:
+	the wires that carry the number, the lowest bit first."""
 	high = {"high"} | {f"bank.{bit}" for bit in range(24) if bank >> bit & 1}
 	fixed = sum(1 << pin for pin, wire in enumerate(chip.address) if wire in high)
 	addresses = [fixed]
-	for bit in range(bits):
-		if f"state.{bit}" not in chip.address:
-			raise Fault(f"{chip.label}: state.{bit} is on no address pin")
-		pin = 1 << chip.address.index(f"state.{bit}")
+	for name in names:
+		if name not in chip.address:
+			raise Fault(f"{chip.label}: {name} is on no address pin")
+		pin = 1 << chip.address.index(name)
 		addresses += [address | pin for address in addresses]
 	return addresses
 
 
 class Rows:
-	"""What the chips hold for every state: next (or None), clear (or None), and the level of each data signal."""
+	"""What the chips of a stage hold in every row: next, kind, clear (where the word has them), and the level of each other
+	bit of the word by its name, in columns."""
 
-	def __init__(self, plan, chips, bank=0):
-		self.bits = plan.machine.bits
-		self.next = None if plan.machine.counted else [0] * (1 << self.bits)
+	def __init__(self, plan, chips, bank=0, stage="loop"):
+		_, self.names, _ = next(found for found in stages_of(plan) if found[0] == stage)
+		self.numbers = {}
 		self.columns = {}
 		for chip in chips:
-			addresses = state_addresses(chip, self.bits, bank)
-			for number, lane in enumerate(chip.lanes()):
-				values = bytes(lane[address] for address in addresses)
-				self.take(values, chip.data[8 * number:8 * number + 8])
+			if chip.stage == stage:
+				addresses = row_addresses(chip, self.names, bank)
+				for number, lane in enumerate(chip.lanes()):
+					values = bytes(lane[address] for address in addresses)
+					self.take(values, chip.data[8 * number:8 * number + 8])
+		self.next = self.numbers.get("next")
+		self.kind = self.numbers.get("kind")
 		self.clear = self.columns.pop("clear", None)
 
 	def take(self, values, pins):
-		part = [0] * 256
 		for pin, wire in enumerate(pins):
-			if wire is None:
-				continue
-			if wire.startswith("next."):
-				weight = 1 << int(wire[5:])
-				part = [sum_ | weight if value >> pin & 1 else sum_ for value, sum_ in enumerate(part)]
-			else:
+			if wire is not None and "." not in wire:
 				self.columns[wire] = values.translate(bytes(value >> pin & 1 for value in range(256)))
-		if any(part):
-			self.next = [known | part[value] for known, value in zip(self.next, values)]
+		for name in ("next", "kind"):
+			weights = [(pin, 1 << int(wire.split(".")[1])) for pin, wire in enumerate(pins) if wire and wire.startswith(name + ".")]
+			if weights:
+				part = [sum(weight for pin, weight in weights if value >> pin & 1) for value in range(256)]
+				known = self.numbers.get(name) or [0] * (1 << len(self.names))
+				self.numbers[name] = [number | part[value] for number, value in zip(known, values)]
 
 
 def image_size_fault(chip, data):

@@ -9,7 +9,9 @@ class Machine:
 	def __init__(self, plan, rows):
 		self.plan = plan
 		self.rows = rows
-		self.size = 1 << plan.machine.bits
+		self.rows_of = {"loop": rows}
+		self.bits = plan.machine.bits
+		self.size = 1 << self.bits
 		self.counted = plan.machine.counted
 		self.clear_async = plan.machine.clear_async
 		self.states = []
@@ -34,6 +36,10 @@ class Machine:
 		for _ in range(cells):
 			self.states.append(state)
 			state = self.after(state)
+		return self.states
+
+	def read_rows(self, _):
+		"""The row read in each cell of the run."""
 		return self.states
 
 	def data_levels(self, signal):
@@ -257,7 +263,7 @@ def upset(plan, machine):
 	waits = []
 	slips = []
 	for state, cell in position.items():
-		for bit in range(plan.machine.bits):
+		for bit in range(machine.bits):
 			flipped = machine.settled(state ^ 1 << bit)
 			steps = 0
 			while flipped not in position:

@@ -5,8 +5,10 @@ import os
 import zlib
 from fractions import Fraction
 
+import oracle_line_frame
+import oracle_machine
 from oracle_chips import Fault, bank_count
-from oracle_machine import codes_seen, glitch_edges, multi_bit_edges, upset
+from oracle_machine import codes_seen, glitch_edges, multi_bit_edges
 from oracle_plan import quantity_of
 
 PROOFS = ["closure", "signals", "colour", "power-up", "upset", "glitches", "speed", "sweep"]
@@ -48,6 +50,8 @@ def check_head(plan, plan_path, manifest):
 def check_chips(plan, chips, folder, formats, manifest):
 	expect("number of chips", len(chips), len(manifest["chips"]))
 	for chip, entry in zip(chips, manifest["chips"]):
+		if plan.machine.form == "line-frame":
+			expect(f"chip {chip.label}: stage", chip.stage, entry.pop("stage", chip.stage))
 		files = [f"{plan.name}.{chip.label}.{kind}" for kind in formats]
 		expect(f"chip {chip.label}", {"label": chip.label, "part": chip.part, "bytes": chip.capacity, "crc32": crc32(chip.image),
 			"sum16": sum(chip.image) % 65536, "files": files, "address": [wire or "-" for wire in chip.address],
@@ -56,9 +60,14 @@ def check_chips(plan, chips, folder, formats, manifest):
 	expect("files in the folder", sorted(wanted), sorted(os.listdir(folder)))
 
 
-def check_start(chips, machine, manifest):
-	expect("start", [{"bank": bank, "stage": "loop", "state": machine.states[0]} for bank in range(bank_count(chips))],
-		manifest["start"])
+def check_start(plan, chips, machine, manifest):
+	"""Of two stages the page does not say which comes first."""
+	first = {"loop": machine.states[0]}
+	if plan.machine.form == "line-frame":
+		first = {"frame": machine.frame_states[0], "line": machine.states[0]}
+	wanted = [{"bank": bank, "stage": stage, "state": state} for bank in range(bank_count(chips))
+		for stage, state in first.items()]
+	expect("start", wanted, sorted(manifest["start"], key=lambda entry: (entry["bank"], entry["stage"])))
 
 
 def check_frame(plan, ticks, frame):
@@ -92,15 +101,21 @@ def check_codes(plan, machine, proof):
 def check_power_up(plan, machine, longest, banks, proof):
 	cells, states = longest
 	expect("power-up: states", banks * machine.size, proof["states"])
-	expect("power-up: frame states", len(set(machine.states[:plan.cells])), proof["frame_states"])
-	expect("power-up: longest way", cells, proof["longest_cells"])
-	if cells and proof["longest_state"] not in states:
+	two = plan.machine.form == "line-frame"
+	frame = machine.feedback if two else machine.states
+	expect("power-up: frame states", len(set(frame[:plan.cells])), proof["frame_states"])
+	if states is None and proof["longest_cells"] < cells:
+		raise Fault(f"manifest: power-up: the longest way takes {cells} cells or more, not {proof['longest_cells']}")
+	if states is not None:
+		expect("power-up: longest way", cells, proof["longest_cells"])
+	if cells and not two and proof["longest_state"] not in states:
 		raise Fault(f"manifest: power-up: state {proof['longest_state']:#x} has not the longest way")
 	expect("power-up: lost states", 0, proof["lost_states"])
 
 
 def check_upset(plan, machine, banks, proof):
-	waits, slips = upset(plan, machine)
+	proofs = oracle_line_frame if plan.machine.form == "line-frame" else oracle_machine
+	waits, slips = proofs.upset(plan, machine)
 	expect("upset: flips", banks * len(waits), proof["upsets"])
 	expect("upset: worst", max(waits), proof["worst_cells"])
 	expect("upset: mean", Fraction(sum(waits), len(waits)), Fraction(proof["mean_cells"]))
@@ -124,9 +139,14 @@ def check_colour(plan, lengths, proofs):
 		expect("colour: phase repeats after lines", clock.cycles(lengths[0]).denominator, proof["repeats_lines"])
 
 
+def stages(plan):
+	machine = plan.machine
+	return (machine.line, machine.frame) if machine.form == "line-frame" else (machine,)
+
+
 def check_glitches(plan, machine, banks, proof):
 	decoded = [signal for signal in plan.signals if signal.field]
-	unlatched = plan.machine.direct or machine.counted and machine.clear_async
+	unlatched = any(stage.direct or stage.clear_async for stage in stages(plan))
 	expect("glitches: verdict where nothing can flicker", proof["verdict"] == "absent", not decoded and not unlatched)
 	if not decoded:
 		return
@@ -147,13 +167,16 @@ def seconds(text):
 
 
 def check_speed(plan, ticks, proof):
-	"""What is measured on the plan; delays of parts are the catalogue's."""
+	"""What is measured on the plan; delays of parts are the catalogue's. Which parts are on the slowest path of two stages
+	is the program's business."""
 	timing = plan.tree.get("timing") or {}
 	cell = min(ticks) / plan.clock.master
 	share = Fraction(timing.get("share", "1/1"))
 	expect("speed: shortest cell", cell, Fraction(proof["cell_s"]))
 	expect("speed: share", cell * share, Fraction(proof["available_s"]))
 	expect("speed: margin", seconds(timing.get("margin", "0 ns")), Fraction(proof["margin_s"]))
+	if plan.machine.form == "line-frame":
+		return
 	holder = "counter" if plan.machine.counted else "latch"
 	if f"{holder} delay" in timing:
 		expect(f"speed: {holder} delay", seconds(timing[f"{holder} delay"]), Fraction(proof["delay_s"]))
@@ -171,7 +194,7 @@ def check_manifest(plan, plan_path, folder, chips, formats, found):
 	manifest = load(os.path.join(folder, f"{plan.name}.manifest.json"))
 	check_head(plan, plan_path, manifest)
 	check_chips(plan, chips, folder, formats, manifest)
-	check_start(chips, machine, manifest)
+	check_start(plan, chips, machine, manifest)
 	check_frame(plan, ticks, manifest["frame"])
 	proofs = manifest["proofs"]
 	expect("proofs", PROOFS, list(proofs))

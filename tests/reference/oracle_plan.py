@@ -1,4 +1,4 @@
-"""Reads a loop plan and lays out its timeline, from the pages of the plan language alone.
+"""Reads a plan and lays out its timeline, from the pages of the plan language alone.
 
 Everything is exact: whole ticks, whole cells, fractions.Fraction. Plans are taken to be well formed (what is a bad plan is
 tested elsewhere); Refused is raised for what the pages call an error and a random plan may run into.
@@ -61,12 +61,14 @@ class Expression:
 	def __init__(self, text):
 		self.text = text
 		pieces = []
+		self.variables = set()
 		position = 0
 		text = text.rstrip()
 		while position < len(text):
 			token = self.TOKEN.match(text, position)
 			number, variable, operator = token.groups()
 			pieces.append(str(integer_of(number)) if number else variable or {"/": "//"}.get(operator, operator))
+			self.variables |= {variable} - {None}
 			position = token.end()
 		self.code = compile(" ".join(pieces), text, "eval")
 
@@ -124,6 +126,7 @@ class Signal:
 		self.role = tree.get("role", "plain")
 		self.active_low = tree.get("active", "high") == "low"
 		self.lead = count_of(tree.get("lead", "0"))
+		self.stage = tree.get("stage", "line")
 		source = tree.get("from", "data")
 		self.field = None if source == "data" else source["field"]
 		self.codes = None
@@ -251,14 +254,57 @@ def line_tree(trees, name):
 	return (count_of(tree["cells"]) if "cells" in tree else cells), regions
 
 
-class Machine:
-	def __init__(self, tree):
+def fields_of(tree, state_bits):
+	"""Lowest bit and width of each field."""
+	fields = {name: bits_of(bits) for name, bits in (tree.get("fields") or {}).items()}
+	if any(low + width > state_bits for low, width in fields.values()):
+		raise Refused(f"a field reaches past the {state_bits} bits of the state")
+	return fields
+
+
+class Stage:
+	"""A table (or counter) with its latch."""
+
+	def __init__(self, name, tree):
+		self.name = name
 		self.bits = count_of(tree["state"])
-		self.fields = {name: bits_of(bits) for name, bits in (tree.get("fields") or {}).items()}
-		self.start = integer_of(tree["start"]) if "start" in tree else None
 		self.direct = tree.get("outputs", "registered") == "direct"
 		self.counted = tree.get("advance", "table") == "count"
-		self.clear_async = tree.get("clear", "sync") == "async"
+		self.clear_async = self.counted and tree.get("clear", "sync") == "async"
+
+	def room(self):
+		"""How many cells (or lines) can have a state of their own: a counter cleared at once needs the state past the last."""
+		return (1 << self.bits) - self.clear_async
+
+
+class LoopMachine(Stage):
+	form = "loop"
+	fixed_variables = ()
+
+	def __init__(self, tree, _):
+		super().__init__("loop", tree)
+		self.fields = fields_of(tree, self.bits)
+		self.start = integer_of(tree["start"]) if "start" in tree else None
+
+
+class LineFrameMachine:
+	"""Fields and start are those of the line stage's state."""
+
+	form = "line-frame"
+	fixed_variables = ("line", "row")
+
+	def __init__(self, tree, line_types):
+		self.line = Stage("line", tree["line"])
+		self.frame = Stage("frame", tree["frame"])
+		self.kind_bits = (line_types - 1).bit_length()
+		if "kind" in tree:
+			if count_of(tree["kind"]) < self.kind_bits:
+				raise Refused(f"{line_types} line types need {self.kind_bits} bits of kind")
+			self.kind_bits = count_of(tree["kind"])
+		self.bits = self.line.bits
+		self.fields = fields_of(tree, self.bits)
+		self.start = integer_of(tree["start"]) if "start" in tree else None
+		self.counted = self.line.counted
 
 
 class Plan:
@@ -271,11 +317,15 @@ class Plan:
 		self.clock = Clock(tree["clock"])
 		self.signals = [Signal(name, signal or {}) for name, signal in tree["signals"].items()]
 		self.stretch_signal = next((signal for signal in self.signals if signal.role == "stretch"), None)
-		self.machine = Machine(tree["machine"])
+		self.machine = self.machine_of(tree["machine"])
 		self.sweeps = [(sweep["bits"], quantity_of(sweep["within"])[0]) for sweep in tree.get("sweep") or ()]
 		self.line_types = {name: self.line_type(name) for name in tree["lines"]}
 		self.lay_out_frame()
 		self.hold_states()
+
+	def machine_of(self, tree):
+		form = LineFrameMachine if tree["form"] == "line-frame" else LoopMachine
+		return form(tree, len(self.tree["lines"]))
 
 	def line_type(self, name):
 		line = LineType(name, *line_tree(self.tree["lines"], name), self.clock)
@@ -314,11 +364,20 @@ class Plan:
 		for number, line, cell, region in self.places:
 			mask = value = 0
 			for field, expression in region.hold.items():
+				if expression.variables & set(self.machine.fixed_variables):
+					raise Refused(f"{expression.text}: a line's states can not depend on its number")
 				held = expression.value(number, cell, cell - region.first, self.lines[number][1])
 				mask, value = self.fixed(mask, value, self.machine.fields[field], held, (number, cell, field))
 			self.held.append((mask, value))
 		if self.machine.start is not None:
-			self.held[0] = self.fixed(*self.held[0], (0, self.machine.bits), self.machine.start, (0, 0, "start"))
+			for number, cell in self.start_cells():
+				self.held[cell] = self.fixed(*self.held[cell], (0, self.machine.bits), self.machine.start, (number, 0, "start"))
+
+	def start_cells(self):
+		"""(line, cell of the frame) of the cells whose state `start` is: the frame's first, or every line's."""
+		if self.machine.form == "loop":
+			return [(0, 0)]
+		return [(number, first) for number, (_, _, first) in enumerate(self.lines)]
 
 	@staticmethod
 	def fixed(mask, value, bits, number, where):

@@ -170,14 +170,26 @@ def table_lap(plan, codes, period, choices):
 def counted_lap(plan, codes, period):
 	"""Cell i has state i, so that only agreement is to be checked."""
 	holds = merged_holds(plan, period)
-	if any(cell & mask != value for cell, (mask, value) in enumerate(holds)):
+	return counted_agree(codes, [(cell, hold, {name: plan.pins[name][cell] for name in codes.names()})
+		for cell, hold in enumerate(holds)])
+
+
+def counted_line(plan, codes):
+	"""Cell i of every line has state i."""
+	return counted_agree(codes, [(column, plan.held[cell], {name: plan.pins[name][cell] for name in codes.names()})
+		for cell, (_, _, column, _) in enumerate(plan.places)])
+
+
+def counted_agree(codes, cells):
+	"""Whether states that are given suit holds and codes: cells of (state, hold, level of each field signal by name)."""
+	if any(state & mask != value for state, (mask, value), _ in cells):
 		return False
 	for name, low, mask, listed in codes.listed:
-		if any(((cell >> low & mask) in listed) != bool(plan.pins[name][cell]) for cell in range(period)):
+		if any(((state >> low & mask) in listed) != bool(levels[name]) for state, _, levels in cells):
 			return False
 	for (low, width), names in codes.automatic:
 		for name in names:
-			seen = {(cell >> low & ((1 << width) - 1), bool(plan.pins[name][cell])) for cell in range(period)}
+			seen = {(state >> low & ((1 << width) - 1), bool(levels[name])) for state, _, levels in cells}
 			if len(seen) != len({code for code, _ in seen}):
 				return False
 	return True
@@ -185,8 +197,7 @@ def counted_lap(plan, codes, period):
 
 def lap_feasible(plan, codes, period):
 	"""Whether cells `period` apart can share a state, all others having one of their own."""
-	room = (1 << plan.machine.bits) - (plan.machine.counted and plan.machine.clear_async)
-	if period > room or not merged_holds(plan, period):
+	if period > plan.machine.room() or not merged_holds(plan, period):
 		return False
 	if plan.machine.counted:
 		return counted_lap(plan, codes, period)
