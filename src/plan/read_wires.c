@@ -453,12 +453,32 @@ static void report_missing_data(struct reader *reader, const struct node *chips,
 		diagnose_hint(reader->diagnostics, "no data pin is left open: add a chip with stage: %s", stage_name(stage));
 }
 
+static bool is_bank_wired(const struct plan *plan, size_t chip, unsigned bit)
+{
+	return address_pin_of(&plan->chips[chip], (struct address_wire){ADDRESS_BANK, bit}) < LIMIT_ADDRESS_PINS;
+}
+
+// Whether a jumper must reach a stage's chips: it reaches one of them, or none of the machine.
+static bool is_bank_wanted(const struct plan *plan, enum stage stage, unsigned bit)
+{
+	bool elsewhere = false;
+	for (size_t chip = 0; chip < plan->chip_count; chip++) {
+		if (!is_bank_wired(plan, chip, bit))
+			continue;
+		if (plan->chips[chip].stage == stage)
+			return true;
+		elsewhere = true;
+	}
+	return !elsewhere;
+}
+
+// All chips of a stage must see a jumper, but a stage may do without: then its rows are the same in all banks.
 static void check_banks_wired(struct reader *reader, const struct node *chips)
 {
 	const struct plan *plan = reader->plan;
 	for (size_t chip = 0; chip < plan->chip_count; chip++)
 		for (unsigned bit = 0; bit < plan->bank_bits; bit++)
-			if (address_pin_of(&plan->chips[chip], (struct address_wire){ADDRESS_BANK, bit}) == LIMIT_ADDRESS_PINS) {
+			if (!is_bank_wired(plan, chip, bit) && is_bank_wanted(plan, plan->chips[chip].stage, bit)) {
 				diagnose(reader->diagnostics, RULE_WIRE_MISSING, list_of(chips, chip, "address")->place,
 				         "bank.%u is on no address pin of chip \"%s\"", bit, plan->chips[chip].label);
 				if (reader->set_bits > 0)
