@@ -197,6 +197,28 @@ static void test_decoded(void **state)
 	drawn_destroy(drawn);
 }
 
+// Lamp (code 3) in cell 1 of the pier, bell (code 4) in its cell 2: from the one to the other more than a bit changes in any case.
+// From 0, 5 or 6 to the lamp too, from 1, 2 and 7 not: of these the lowest, 1, is where lines begin.
+static void test_quiet_start(void **state)
+{
+	(void)state;
+	struct drawn *drawn = draw("  line: { state: 4 bits }\n  frame: { state: 2 bits }\n  fields: { top: 3..1 }\n",
+	                           "signals:\n"
+	                           "  lamp: { role: plain, active: high, from: { field: top, codes: [3] } }\n"
+	                           "  bell: { role: plain, active: high, from: { field: top, codes: [4] } }\n"
+	                           "lines:\n"
+	                           "  pier:\n"
+	                           "    regions:\n"
+	                           "      - { region: a, cells: 1 }\n"
+	                           "      - { region: b, cells: 1, assert: [lamp] }\n"
+	                           "      - { region: c, cells: 1, assert: [bell] }\n"
+	                           "      - { region: d, cells: 1 }\n"
+	                           "  mole: { regions: [ { region: a, cells: 2 } ] }\n" FRAME CHIPS);
+	assert_valid(drawn);
+	assert_int_equal(drawn->table->state_of_cell[0], 2);
+	drawn_destroy(drawn);
+}
+
 // A counter's states are what they are: cell i of any line has state i.
 static void test_counted(void **state)
 {
@@ -309,7 +331,7 @@ int main(void)
 		cmocka_unit_test(test_start_tight),          cmocka_unit_test(test_first_cells_differ),
 		cmocka_unit_test(test_start_conflicts),      cmocka_unit_test(test_short_in_a_kind),
 		cmocka_unit_test(test_decoded),              cmocka_unit_test(test_counted),
-		cmocka_unit_test(test_random),
+		cmocka_unit_test(test_quiet_start),          cmocka_unit_test(test_random),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }
