@@ -169,9 +169,31 @@ static void test_short_in_a_kind(void **state)
 	                   "rows differ");
 	drawn_destroy(drawn);
 	drawn = draw_both("  line: { state: 3 bits }\n  frame: { state: 2 bits }\n  fields: { top: 2 }\n", "[1]", "{ region: a, cells: 6 }",
-	                  "{ region: a, cells: 2 }");
+	                  "{ region: a, cells: 4 }");
 	assert_refused(drawn, RULE_STATES_SHORT, 1);
 	assert_says(drawn, "6 states needed for this cell and those that compete with it under the codes of \"top\", 4 available");
+	drawn_destroy(drawn);
+}
+
+// A start that another cell of a later type holds is told where the plan says it; the kind, which all cells hold, is no hold.
+static void test_words(void **state)
+{
+	(void)state;
+	struct drawn *drawn = draw_both("  line: { state: 3 bits }\n  frame: { state: 2 bits }\n  start: 5\n  fields: { at: 2..0 }\n", NULL,
+	                                "{ region: a, cells: 2 }", "{ region: a, cells: 1 }, { region: b, cells: 1, hold: { at: 5 } }");
+	assert_refused(drawn, RULE_STATE_SHARED, 1);
+	assert_says(drawn, "mole.yaml:8:10: error: line type \"mole\", cell 0, region \"a\", and line type \"mole\", cell 1, region \"b\", are held to one "
+	                   "state, 0x5");
+	drawn_destroy(drawn);
+	drawn = draw("  line: { state: 3 bits }\n  frame: { state: 2 bits }\n  fields: { top: 2 }\n",
+	             "signals:\n"
+	             "  lamp: { role: plain, active: high, from: { field: top, codes: [1] } }\n"
+	             "  bell: { role: plain, active: high, from: { field: top, codes: [1] } }\n"
+	             "lines:\n"
+	             "  pier: { regions: [ { region: a, cells: 2 } ] }\n"
+	             "  mole: { regions: [ { region: a, cells: 1 }, { region: b, cells: 1, assert: [lamp] } ] }\n" FRAME CHIPS);
+	assert_refused(drawn, RULE_CODE_CONFLICT, 1);
+	assert_says(drawn, "line type \"mole\", cell 1, region \"b\": field \"top\" has no code for \"lamp\" asserted, \"bell\" not asserted");
 	drawn_destroy(drawn);
 }
 
@@ -331,6 +353,7 @@ int main(void)
 		cmocka_unit_test(test_start_tight),          cmocka_unit_test(test_first_cells_differ),
 		cmocka_unit_test(test_start_conflicts),      cmocka_unit_test(test_short_in_a_kind),
 		cmocka_unit_test(test_decoded),              cmocka_unit_test(test_counted),
+		cmocka_unit_test(test_words),
 		cmocka_unit_test(test_quiet_start),          cmocka_unit_test(test_random),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
