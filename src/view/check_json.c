@@ -7,7 +7,7 @@
 #include "view/chips.h"
 #include "view/divider.h"
 #include "view/figures.h"
-#include "view/manifest.h"
+#include "view/frame.h"
 #include "view/proofs.h"
 
 static json_t *ticks_json(int64_t ticks)

@@ -120,6 +120,8 @@ json_t *view_chips_json(const struct plan *plan)
 		json_t *entry = json_object();
 		json_put(&entry, "label", json_string(chip->label));
 		json_put(&entry, "part", json_string(chip->part->name));
+		if (plan->machine.form == FORM_LINE_FRAME)
+			json_put(&entry, "stage", json_string(stage_name(chip->stage)));
 		json_put_time(&entry, "access", chip->access_s, UNIT_NANOSECONDS);
 		json_put(&entry, "address", view_address_json(chip));
 		json_put(&entry, "data", view_data_json(plan, chip));

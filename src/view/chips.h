@@ -18,7 +18,7 @@ void view_chips(struct text *out, const struct plan *plan);
 json_t *view_address_json(const struct chip *chip);
 json_t *view_data_json(const struct plan *plan, const struct chip *chip);
 
-// All chips as [ { "label", "part", "access_s" (exact), "access_ns", "address": as above, "data": as above } ]. A new
+// All chips as [ { "label", "part", "stage" (of a line-frame machine), "access_s" (exact), "access_ns", "address": as above, "data": as above } ]. A new
 // reference; NULL when memory is out.
 json_t *view_chips_json(const struct plan *plan);
 
