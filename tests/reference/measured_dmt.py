@@ -3,9 +3,9 @@
 
 	measured_dmt.py PLAN IMAGES
 
-Prints what was found, and fails when it is not as VESA DMT 1.0 rev. 13 has it for DMT ID 04h. That page counts 8 dots and 8 lines of
-border on each side; here they are part of the porches, as is usual. It gives lines for vertical sync and not where in a line
-its edges are, so vertical porches are measured in whole lines.
+Prints what was found, and fails when it is not as VESA DMT 1.0 rev. 13 has it for DMT ID 04h. That page counts 8 dots and 8 lines
+of border on each side; here they are part of the porches, as is usual. Of vertical sync it has the number of lines; where in a
+line its edges are is left open here, so vertical porches are measured in whole lines.
 """
 
 import sys

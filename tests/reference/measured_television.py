@@ -9,7 +9,7 @@ Prints what was found, and fails when it is not as the standards have it:
     B470  Rec. ITU-R BT.470-6 (1998), annex 1, tables 1, 1-1 and 1-2: system M without colour, and B, G
     R170  EIA RS-170 (1957), in parts of a line H or a field V: from memory
 
-Sync is low while asserted, as the video signal has it; when picture is shown is whatever the blanking pin says for more of the time.
+Sync is low while asserted, as the video signal has it. The level that the blanking pin has for more of the time is picture.
 """
 
 import sys
@@ -90,6 +90,7 @@ class Field:
 		self.after_end = self.run_end(pulses, self.broad_end, lambda at: is_narrow(pulses.widths[at]))
 		self.end = self.run_end(pulses, self.after_end, lambda at: not is_narrow(pulses.widths[at]) and not pulses.broad[at])
 		self.start = pulses.starts[self.first]
+		self.gap = self.start - pulses.starts[self.first - 1] if self.first else None
 		self.counts = (self.before, self.broad_end - place, self.after_end - self.broad_end)
 
 	@staticmethod
@@ -123,7 +124,8 @@ def measure_block(findings, which, pulses, field, kept):
 
 def measure_syncs(findings, which, pulses, field, first_line, count):
 	"""The line syncs that follow the block: the first one's place in lines from the first equalising pulse, and their number."""
-	findings.each(f"{which}: first line sync, lines after the first pulse", [field.in_lines(pulses.starts[field.after_end])], first_line)
+	first = field.in_lines(pulses.starts[field.after_end])
+	findings.each(f"{which}: first line sync, lines after the first pulse", [first], first_line)
 	findings.each(f"{which}: line syncs", [field.end - field.after_end], count)
 	findings.each(f"{which}: lines", lines_apart(pulses, field.after_end, field.end - 1, field.line), 1)
 	findings.within(f"{which}: line sync", pulses.widths[field.after_end:field.end], *limits("sync 525"))
@@ -131,7 +133,8 @@ def measure_syncs(findings, which, pulses, field, first_line, count):
 
 def visible_runs(trace):
 	shown = 1 - trace.rarer_level("blank")
-	return [(trace.microseconds(first), trace.microseconds(first + ticks)) for first, ticks, level in trace.runs("blank") if level == shown]
+	return [(trace.microseconds(first), trace.microseconds(first + ticks))
+		for first, ticks, level in trace.runs("blank") if level == shown]
 
 
 def measure_blanking(findings, which, visible, field, picture, kept):
@@ -176,7 +179,7 @@ def measure_interlaced(findings, trace):
 	fields = [Field(pulses, place, line) for place in pulses.blocks()]
 	# Field 1's block begins a whole line after a line sync, field 2's half a line after one.
 	fields = [field for field in fields if field.first > 0 and field.end < len(pulses.starts)]
-	first = next((number for number, field in enumerate(fields) if pulses.starts[field.first] - pulses.starts[field.first - 1] == line), None)
+	first = next((number for number, field in enumerate(fields) if field.gap == line), None)
 	findings.note(first is not None, "a field begins a line after the last line's sync")
 	if first is None or len(fields) < first + 3:
 		findings.note(False, "two fields and the beginning of a third")
@@ -193,7 +196,7 @@ def measure_interlaced(findings, trace):
 		measure_syncs(findings, which, pulses, field, first_line, count)
 		measure_blanking(findings, which, visible, field, picture, kept)
 	findings.each("field 2 after field 1, lines", [one.in_lines(two.start)], Fraction(525, 2))
-	findings.each("field 2, lines after line 263's sync", [(two.start - pulses.starts[two.first - 1]) / line], Fraction(1, 2))
+	findings.each("field 2, lines after line 263's sync", [two.gap / line], Fraction(1, 2))
 	findings.each("frame, lines", [one.in_lines(three.start)], 525)
 	findings.each("frames a second", [10**6 / (three.start - one.start)], Fraction(LINE_525, 525))
 	measure_line_blanking(findings, pulses, visible, one, kept)
