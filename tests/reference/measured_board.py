@@ -30,6 +30,7 @@ class Stage:
 		control = [] if self.counted else [f"next.{bit}" for bit in range(self.bits)]
 		control += before_signals + (["clear"] if self.counted else [])
 		self.word = control + signals
+		self.kind_bits = sum(bit.startswith("kind.") for bit in self.word)
 		self.part = part
 		self.chips = -(-len(self.word) // PARTS[part][1])
 		self.signals = signals
@@ -118,8 +119,7 @@ class Board:
 		labels = [f"rom{number}" for number in range(self.line.chips + (self.frame.chips if self.frame else 0))]
 		images = list(images_of(folder, name or tree["name"], labels))
 		if self.frame:
-			kind_bits = sum(bit.startswith("kind.") for bit in self.frame.word)
-			address_bits += kind_bits
+			address_bits += self.frame.kind_bits
 			self.frame.take(images[self.line.chips:], self.frame.bits, bank << self.frame.bits)
 		self.line.take(images[:self.line.chips], address_bits, bank << address_bits)
 
@@ -130,7 +130,7 @@ class Board:
 		v, kind, step, line_pins, frame_pins = 0, 0, 1, 0, 0
 		if frame:
 			v = (1 << frame.bits) - 1
-			kind = max(frame.kind)
+			kind = (1 << frame.kind_bits) - 1
 		while True:
 			if frame and frame.direct:
 				kind, frame_pins = frame.kind[v], frame.pins[v]
