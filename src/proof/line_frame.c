@@ -17,10 +17,23 @@ static bool numbers_cells(const struct trial *trial)
 	return !trial->timeline->has_holds && trial->decoders->count == 0 && !trial->timeline->plan->machine.has_start;
 }
 
-uint32_t line_frame_numbered_bits(const struct trial *trial)
+bool line_frame_number(struct trial *trial)
 {
-	const uint32_t lines = low_bits(trial->at.bits) & ~low_bits(trial->at.frame);
-	return lines | (numbers_cells(trial) ? low_bits(trial->wiring.line.state_bits) : 0);
+	const struct timeline *timeline = trial->timeline;
+	const bool cells = numbers_cells(trial);
+	uint32_t *numbered = arena_array(trial->proofs->arena, timeline->cell_count, sizeof *numbered);
+	if (numbered == NULL)
+		return false;
+	for (uint32_t line = 0; line < timeline->line_count; line++) {
+		const struct frame_line *place = &timeline->lines[line];
+		for (uint32_t cell = 0; cell < timeline->types[place->type].cells; cell++)
+			numbered[place->first_cell + cell] = line << trial->at.frame | (cells ? cell : 0);
+	}
+	trial->numbered = numbered;
+	trial->numbered_bits = low_bits(trial->at.bits) & ~low_bits(trial->at.frame);
+	if (cells)
+		trial->numbered_bits |= low_bits(trial->wiring.line.state_bits);
+	return true;
 }
 
 // The line stage's state after the second step of a machine that is let run: by then even one that came up anywhere is
@@ -49,16 +62,15 @@ uint32_t line_frame_start(const struct trial *trial, bool has_start, uint32_t li
 	return state | (has_start ? line_start : find_line_start(trial, state));
 }
 
-// What the pins of a stage show, as asserted signals; `at_rest` are the levels of signals that are not.
-static uint64_t stage_pins(const struct trial *trial, enum stage stage, uint32_t state, uint64_t at_rest)
+// What the pins of a stage show, as asserted signals.
+static uint64_t stage_pins(const struct trial *trial, enum stage stage, uint32_t state)
 {
 	const uint64_t levels = machine_row(trial->machine, stage, machine_row_address(trial->machine, stage, state)).levels;
-	return (levels ^ at_rest) & wiring_stage(&trial->wiring, stage)->data_signals;
+	return (levels ^ levels_of(trial->timeline->plan, 0)) & wiring_stage(&trial->wiring, stage)->data_signals;
 }
 
 // The pins of the frame stage, looked up when it steps.
 struct frame_pins {
-	uint64_t at_rest;
 	bool latched;
 	uint64_t row;        // of its state's row
 	uint64_t shown;      // at the pins
@@ -68,7 +80,7 @@ struct frame_pins {
 static void frame_steps(const struct trial *trial, struct frame_pins *pins, uint32_t cell_after, uint32_t state_after)
 {
 	pins->shown = pins->row;
-	pins->row = stage_pins(trial, STAGE_FRAME, state_after, pins->at_rest);
+	pins->row = stage_pins(trial, STAGE_FRAME, state_after);
 	if (!pins->latched)
 		pins->shown = pins->row;
 	else if (pins->first_cell > cell_after)
@@ -81,17 +93,16 @@ void line_frame_lap(struct trial *trial, uint32_t start)
 	const struct machine *machine = trial->machine;
 	const uint32_t cells = trial->timeline->cell_count, first = machine_settle(machine, start);
 	const bool line_latched = trial->wiring.line.outputs == OUTPUTS_REGISTERED;
-	const uint64_t at_rest = levels_of(trial->timeline->plan, 0);
-	struct frame_pins frame = {.at_rest = at_rest, .latched = trial->wiring.frame.outputs == OUTPUTS_REGISTERED, .first_cell = cells};
+	struct frame_pins frame = {.latched = trial->wiring.frame.outputs == OUTPUTS_REGISTERED, .first_cell = cells};
 	uint32_t state = first;
-	frame.row = stage_pins(trial, STAGE_FRAME, state, at_rest);
+	frame.row = stage_pins(trial, STAGE_FRAME, state);
 	frame.shown = frame.latched ? 0 : frame.row;
 	memset(lap->pins, 0, cells * sizeof *lap->pins);
 	lap->return_cells = 0;
 	for (uint32_t cell = 0; cell < cells; cell++) {
 		const bool steps = machine_steps(machine, state);
 		lap->states[cell] = state;
-		lap->pins[!line_latched ? cell : cell + 1 == cells ? 0 : cell + 1] |= stage_pins(trial, STAGE_LINE, state, at_rest);
+		lap->pins[!line_latched ? cell : cell + 1 == cells ? 0 : cell + 1] |= stage_pins(trial, STAGE_LINE, state);
 		lap->pins[cell] |= frame.shown;
 		state = machine_next(machine, state);
 		if (steps)

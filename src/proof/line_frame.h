@@ -6,14 +6,9 @@
 #include "proof/trial.h"
 
 // The state bits that count lines and cells (design page 1.5): the frame stage's number the frame's lines from 0; the
-// line stage's number each line's cells from 0, unless holds, decoded fields or a start say otherwise. Cannot fail.
-uint32_t line_frame_numbered_bits(const struct trial *trial);
-
-// What these bits are in a cell of a line (which trial->numbered_bits must tell already). Cannot fail.
-static inline uint32_t line_frame_planned(const struct trial *trial, uint32_t line, uint32_t cell)
-{
-	return (line << trial->at.frame | cell) & trial->numbered_bits;
-}
+// line stage's number each line's cells from 0, unless holds, decoded fields or a start say otherwise. Fills
+// trial->numbered, in the proofs' arena. False when memory is out.
+bool line_frame_number(struct trial *trial);
 
 // The whole state in the frame's first cell. With has_start, the line stage's is line_start; otherwise it is found: every
 // line begins in the same. Cannot fail.

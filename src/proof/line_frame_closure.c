@@ -53,18 +53,16 @@ struct counterexample line_frame_departure(const struct trial *trial)
 	const struct timeline *timeline = trial->timeline;
 	const struct lap *lap = &trial->lap;
 	const uint32_t frame_bits = trial->numbered_bits >> trial->at.frame << trial->at.frame;
-	for (uint32_t line = 0; line < timeline->line_count; line++) {
-		const uint32_t first = timeline->lines[line].first_cell, cells = timeline->types[timeline->lines[line].type].cells;
-		const uint32_t line_after = line + 1 == timeline->line_count ? 0 : line + 1;
-		for (uint32_t cell = 0; cell < cells; cell++) {
-			const bool ends = cell + 1 == cells, last = first + cell + 1 == timeline->cell_count;
-			const uint32_t state = last ? lap->state_after : lap->states[first + cell + 1];
-			const uint32_t planned = line_frame_planned(trial, ends ? line_after : line, ends ? 0 : cell + 1);
-			const uint32_t wrong = (state & trial->numbered_bits) ^ planned;
+	for (uint32_t line = 0, cell = 0; line < timeline->line_count; line++) {
+		const uint32_t end = timeline->lines[line].first_cell + timeline->types[timeline->lines[line].type].cells;
+		for (; cell < end; cell++) {
+			const uint32_t after = cell + 1 == timeline->cell_count ? 0 : cell + 1;
+			const uint32_t state = cell + 1 == timeline->cell_count ? lap->state_after : lap->states[cell + 1];
+			const uint32_t wrong = (state ^ trial->numbered[after]) & trial->numbered_bits;
 			if ((wrong & frame_bits) != 0)
-				return frame_fault(trial, first + cell, state, planned, ends);
+				return frame_fault(trial, cell, state, trial->numbered[after], cell + 1 == end);
 			if (wrong != 0)
-				return line_fault(trial, first + cell, state, planned);
+				return line_fault(trial, cell, state, trial->numbered[after]);
 		}
 	}
 	return lap->state_after != lap->states[0] ? end_fault(trial) : (struct counterexample){.present = false};

@@ -136,9 +136,8 @@ struct proofs *proofs_run(const struct timeline *timeline, const struct image *i
 	trial.at = feedback_of(&trial.wiring);
 	trial.period = trial.wiring.form == FORM_LINE_FRAME ? timeline->cell_count : timeline_period(timeline);
 	trial.decoders = decoders_create(proofs->arena, timeline->plan);
-	bool ready = trial.expected != NULL && trial.period != 0 && trial.decoders != NULL;
-	if (ready && trial.wiring.form == FORM_LINE_FRAME)
-		trial.numbered_bits = line_frame_numbered_bits(&trial);
+	bool ready = trial.expected != NULL && trial.period != 0 && trial.decoders != NULL &&
+	             (trial.wiring.form == FORM_LOOP || line_frame_number(&trial));
 	if (!ready || !prove_banks(&trial, has_start, start_state)) {
 		proofs_destroy(proofs);
 		return NULL;

@@ -40,7 +40,8 @@ struct trial {
 	struct wiring wiring;
 	struct feedback at;           // where the parts of a state lie
 	const struct machine *machine;
-	uint32_t numbered_bits;       // bits of the state that count lines and cells; see line_frame_planned
+	const uint32_t *numbered;     // [cell_count]: the bits of the state that count lines and cells, as planned; NULL in a loop machine
+	uint32_t numbered_bits;       // which bits these are
 	uint32_t bank;
 	bool has_start;               // the plan's; otherwise `start` was found in the images
 	uint32_t start;
