@@ -75,6 +75,8 @@ void view_chips(struct text *out, const struct plan *plan)
 		const struct chip *chip = &plan->chips[index];
 		text_printf(out, "chip %s: %s, ", chip->label, chip->part->name);
 		text_put_time_in(out, chip->access_s, UNIT_NANOSECONDS);
+		if (plan->machine.form == FORM_LINE_FRAME)
+			text_printf(out, ", %s stage", stage_name(chip->stage));
 		text_put(out, "\n");
 		put_pins(out, plan, chip);
 	}
