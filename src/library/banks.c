@@ -5,28 +5,46 @@
 #include "catalogue/catalogue.h"
 #include "library/library.h"
 
-static bool same_codes(const struct table *left, const struct table *right, size_t signal)
+// The same signal of another plan of a set, in which decoded signals may stand in another order.
+static size_t signal_of_name(const struct plan *plan, const char *name)
 {
-	const size_t count = left->code_counts[signal];
-	return count == right->code_counts[signal] && memcmp(left->codes[signal], right->codes[signal], count * sizeof(uint32_t)) == 0;
+	size_t signal = 0;
+	while (strcmp(plan->signals[signal].name, name) != 0)
+		signal++;
+	return signal;
 }
 
-// A decoder is wired for the same codes in all banks.
+// Whether the codes that a table has for a decoded signal are those of the set's first.
+static bool same_codes(const scanlatch_images *images, size_t member, size_t signal)
+{
+	const struct table *first = images->members[0].table, *other = images->members[member].table;
+	const size_t there = signal_of_name(images->plan->plan, images->plan->members[member].plan->signals[signal].name);
+	const size_t count = other->code_counts[signal];
+	return count == first->code_counts[there] && memcmp(other->codes[signal], first->codes[there], count * sizeof(uint32_t)) == 0;
+}
+
+static void report_codes(const scanlatch_images *images, size_t member, size_t signal, struct diagnostics *diagnostics)
+{
+	const struct plan *plan = images->plan->plan, *other = images->plan->members[member].plan;
+	diagnose(diagnostics, RULE_SET_DISAGREES, other->signals[signal].place, "signal \"%s\": the codes that are found for plan \"%s\" are not "
+	         "those of plan \"%s\" of the same set", other->signals[signal].name, other->name, plan->name);
+	diagnose_also(diagnostics, plan->signals[signal_of_name(plan, other->signals[signal].name)].place, "the signal in that plan");
+	diagnose_hint(diagnostics, "list the codes in both plans");
+}
+
+// A decoder is wired for the same codes in all banks. That listed codes agree has been seen when the set was read.
 static bool codes_agree(const scanlatch_images *images, struct diagnostics *diagnostics)
 {
-	const struct plan *plan = images->plan->plan;
 	bool agree = true;
-	for (size_t index = 1; index < images->plan->member_count; index++)
+	for (size_t member = 1; member < images->plan->member_count; member++) {
+		const struct plan *plan = images->plan->members[member].plan;
 		for (size_t signal = 0; signal < plan->signal_count; signal++) {
-			const struct signal *other = &images->plan->members[index].plan->signals[signal];
-			if (!other->auto_codes || same_codes(images->members[0].table, images->members[index].table, signal))
+			if (!plan->signals[signal].auto_codes || same_codes(images, member, signal))
 				continue;
-			diagnose(diagnostics, RULE_SET_DISAGREES, other->place, "signal \"%s\": the codes that are found for plan \"%s\" are not those of "
-			         "plan \"%s\" of the same set", other->name, images->plan->members[index].plan->name, plan->name);
-			diagnose_also(diagnostics, plan->signals[signal].place, "the signal in that plan");
-			diagnose_hint(diagnostics, "list the codes in both plans");
+			report_codes(images, member, signal, diagnostics);
 			agree = false;
 		}
+	}
 	return agree;
 }
 

@@ -23,7 +23,7 @@ scanlatch_proofs *scanlatch_prove(const scanlatch_images *images)
 		const struct member *member = &images->plan->members[index];
 		proofs->proofs[index] = proofs_run_banks(member->timeline, images->images, member->banks, member->bank_count,
 		                                         images->members[index].has_start, images->members[index].start);
-		good = proofs->proofs[index] != NULL;
+		good = proofs->proofs[index] != NULL && (index == 0 || proofs_compare_codes(proofs->proofs[0], proofs->proofs[index]));
 	}
 	if (good)
 		return proofs;

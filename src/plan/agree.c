@@ -147,9 +147,10 @@ static void put_decoding(struct text *text, const struct plan *plan, const struc
 	text_put(text, signal->auto_codes ? " with codes: auto" : signal->code_count == 1 ? " with code " : " with codes ");
 	for (size_t code = 0; code < signal->code_count; code++)
 		text_printf(text, "%s%u", code > 0 ? ", " : "", (unsigned)signal->codes[code]);
+	text_printf(text, ", active: %s", signal->active_high ? "high" : "low"); // the decoder's, not the EEPROM's
 }
 
-// A signal of either plan that comes from a field must come from the same bits and codes in the other.
+// A signal of either plan that comes from a field must come from the same bits and codes, and have the same level, in the other.
 static bool same_decoding(const struct comparison *compared, const char *name)
 {
 	const struct plan *plans[2] = {compared->first, compared->second};

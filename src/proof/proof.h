@@ -198,6 +198,10 @@ struct proofs *proofs_run_banks(const struct timeline *timeline, const struct im
 // out. Freed with proofs_destroy.
 struct proofs *proofs_of_plan(const struct timeline *timeline);
 
+// Of two plans of a set, proved before: signals fails in the second where codes that were read out of its images are not those of the first.
+// False when memory is out.
+bool proofs_compare_codes(const struct proofs *first, struct proofs *other);
+
 void proofs_destroy(struct proofs *proofs);
 
 // True if a must failed (or, with strict, any proof). Cannot fail.

@@ -1,12 +1,21 @@
 // Speed: does the EEPROM path finish within the share of the shortest cell that it is given?
 #include "base/arena.h"
+#include "catalogue/catalogue.h"
 #include "proof/trial.h"
 
-size_t slowest_chip(const struct wiring *wiring, enum stage stage)
+static bool carries(const struct chip *chip, unsigned kinds)
+{
+	for (unsigned pin = 0; pin < chip->part->data_pins; pin++)
+		if (kinds >> chip->data[pin].kind & 1)
+			return true;
+	return false;
+}
+
+size_t slowest_chip(const struct wiring *wiring, enum stage stage, unsigned kinds)
 {
 	size_t slowest = SIZE_MAX;
 	for (size_t chip = 0; chip < wiring->chip_count; chip++)
-		if (wiring->chips[chip].stage == stage &&
+		if (wiring->chips[chip].stage == stage && carries(&wiring->chips[chip], kinds) &&
 		    (slowest == SIZE_MAX || fraction_compare(wiring->chips[chip].access_s, wiring->chips[slowest].access_s) > 0))
 			slowest = chip;
 	return slowest;
@@ -29,23 +38,36 @@ static struct fraction setup_of(const struct trial *trial, enum stage stage)
 	return timing->counter_setup_s[stage];
 }
 
-// A look-up at the address that the stage's own latch or counter holds, or (without `delay`) that another chip answers.
-static void add_pass(const struct trial *trial, enum stage stage, bool delay, struct speed_result *result)
+// What holds a stage's address: its own latch or counter, and for the line stage the latch of the kind too, the slower of both.
+static struct fraction address_delay(const struct trial *trial, enum stage stage, bool *counter)
 {
+	const struct wiring *wiring = &trial->wiring;
 	const struct timing *timing = &trial->timeline->plan->timing;
-	const bool counter = wiring_stage(&trial->wiring, stage)->advance == ADVANCE_COUNT;
+	const bool counts = wiring_stage(wiring, stage)->advance == ADVANCE_COUNT;
+	const struct fraction own_s = counts ? timing->counter_delay_s[stage] : timing->latch_delay_s;
+	const bool kind_latched = stage == STAGE_LINE && wiring->kind_bits > 0 && wiring->frame.outputs == OUTPUTS_REGISTERED;
+	*counter = counts && !(kind_latched && fraction_compare(timing->latch_delay_s, own_s) > 0);
+	return *counter || !counts ? own_s : timing->latch_delay_s;
+}
+
+// A look-up by the slowest of a stage's chips that carries one of some wires, at the address that is held or (without `delay`) that
+// another chip answers.
+static void add_pass(const struct trial *trial, enum stage stage, unsigned kinds, bool delay, struct speed_result *result)
+{
 	struct speed_pass *pass = &result->passes[result->pass_count++];
-	*pass = (struct speed_pass){.has_delay = delay, .counter = counter, .chip = slowest_chip(&trial->wiring, stage)};
-	pass->delay_s = !delay ? FRACTION_ZERO : counter ? timing->counter_delay_s[stage] : timing->latch_delay_s;
+	*pass = (struct speed_pass){.has_delay = delay, .delay_s = FRACTION_ZERO, .chip = slowest_chip(&trial->wiring, stage, kinds)};
+	if (delay)
+		pass->delay_s = address_delay(trial, stage, &pass->counter);
 	pass->access_s = trial->wiring.chips[pass->chip].access_s;
 }
 
 // A stage's own look-ups. An asynchronous clear is looked up before the row of the state that it leads to.
-static void add_stage(const struct trial *trial, enum stage stage, bool delay, struct speed_result *result)
+static void add_stage(const struct trial *trial, enum stage stage, unsigned kinds, bool delay, struct speed_result *result)
 {
-	add_pass(trial, stage, delay, result);
-	if (clears_at_once(wiring_stage(&trial->wiring, stage)))
-		add_pass(trial, stage, true, result);
+	const bool clears = clears_at_once(wiring_stage(&trial->wiring, stage));
+	if (clears)
+		add_pass(trial, stage, 1u << DATA_CLEAR, delay, result);
+	add_pass(trial, stage, kinds, delay || clears, result);
 }
 
 // Sums up. False if a figure does not fit 64 bits.
@@ -73,8 +95,8 @@ static bool measure_cell(const struct trial *trial, bool waits, struct speed_res
 	if (wiring->form == FORM_LINE_FRAME && wiring->line.outputs == OUTPUTS_DIRECT) // step goes straight to the frame stage
 		result->setup_s = larger(result->setup_s, setup_of(trial, STAGE_FRAME));
 	if (waits)
-		add_stage(trial, STAGE_FRAME, true, result);
-	add_stage(trial, STAGE_LINE, !waits, result);
+		add_stage(trial, STAGE_FRAME, 1u << DATA_KIND, true, result);
+	add_stage(trial, STAGE_LINE, ANY_WIRE, !waits, result);
 	return finish(trial, trial->lap.shortest_ticks, result);
 }
 
@@ -86,7 +108,7 @@ static bool measure_line(const struct trial *trial, struct speed_result *result)
 		if (trial->lap.line_ticks[line] < shortest)
 			shortest = trial->lap.line_ticks[line];
 	*result = (struct speed_result){.of_line = true, .setup_s = setup_of(trial, STAGE_FRAME)};
-	add_stage(trial, STAGE_FRAME, true, result);
+	add_stage(trial, STAGE_FRAME, ANY_WIRE, true, result);
 	return finish(trial, shortest, result);
 }
 

@@ -112,8 +112,10 @@ const char *state_words(const struct trial *trial, uint32_t state);
 // A counterexample at a state of a second loop, without a cell. Its words, "its next state is …", say what would mend its
 // row, and are NULL when memory is out.
 struct counterexample blame_loop(const struct trial *trial, uint32_t state);
-// The chip of a stage with the longest access time; of equals, the first. Cannot fail.
-size_t slowest_chip(const struct wiring *wiring, enum stage stage);
+#define ANY_WIRE (~0u)
+// The chip of a stage with the longest access time among those that carry one of some wires (1u << enum data_wire_kind, or ANY_WIRE); of
+// equals, the first. SIZE_MAX if none does. Cannot fail.
+size_t slowest_chip(const struct wiring *wiring, enum stage stage, unsigned kinds);
 // The cell before, around the frame. Cannot fail.
 uint32_t cell_before(const struct trial *trial, uint32_t cell);
 

@@ -18,55 +18,48 @@ static struct fraction delay_of(const struct trial *trial, enum stage stage)
 	return wiring_stage(&trial->wiring, stage)->advance == ADVANCE_COUNT ? timing->counter_delay_s[stage] : timing->latch_delay_s;
 }
 
-// From an edge until a chip of a stage has answered. The line stage's address is complete only when the kind is there, and
-// that comes straight from the frame stage's chips if it is not latched.
-static struct fraction answer_time(const struct trial *trial, enum stage stage, const struct chip *chip)
+// From a step until the frame stage's chips have answered with the kind; an async clear is looked up before.
+static struct fraction answer_time_of_kind(const struct trial *trial)
+{
+	const struct wiring *wiring = &trial->wiring;
+	const struct fraction delay_s = delay_of(trial, STAGE_FRAME);
+	const struct fraction kind_s = sum(delay_s, wiring->chips[slowest_chip(wiring, STAGE_FRAME, 1u << DATA_KIND)].access_s);
+	if (!clears_at_once(&wiring->frame))
+		return kind_s;
+	return sum(sum(delay_s, wiring->chips[slowest_chip(wiring, STAGE_FRAME, 1u << DATA_CLEAR)].access_s), kind_s);
+}
+
+// From an edge until a chip of a stage has answered. The line stage's address is complete only when the kind is there, from its
+// latch or, if it is not latched, straight from the frame stage's chips.
+static struct fraction answer_time(const struct trial *trial, enum stage stage, size_t chip)
 {
 	const struct wiring *wiring = &trial->wiring;
 	struct fraction address_s = delay_of(trial, stage);
-	if (stage == STAGE_LINE && wiring->kind_bits > 0 && wiring->frame.outputs == OUTPUTS_DIRECT) {
-		const struct chip *frame_chip = &wiring->chips[slowest_chip(wiring, STAGE_FRAME)];
-		const struct fraction kind_s = sum(delay_of(trial, STAGE_FRAME), frame_chip->access_s);
+	if (stage == STAGE_LINE && wiring->kind_bits > 0) {
+		struct fraction kind_s = trial->timeline->plan->timing.latch_delay_s;
+		if (wiring->frame.outputs == OUTPUTS_DIRECT)
+			kind_s = answer_time_of_kind(trial);
 		if (fraction_compare(kind_s, address_s) > 0)
 			address_s = kind_s;
 	}
-	return sum(address_s, chip->access_s);
-}
-
-static bool carries_clear(const struct chip *chip)
-{
-	for (unsigned pin = 0; pin < chip->part->data_pins; pin++)
-		if (chip->data[pin].kind == DATA_CLEAR)
-			return true;
-	return false;
-}
-
-static const struct chip *slowest_with_clear(const struct wiring *wiring, enum stage stage)
-{
-	const struct chip *slowest = NULL;
-	for (size_t index = 0; index < wiring->chip_count; index++) {
-		const struct chip *chip = &wiring->chips[index];
-		if (chip->stage == stage && carries_clear(chip) &&
-		    (slowest == NULL || fraction_compare(chip->access_s, slowest->access_s) > 0))
-			slowest = chip;
-	}
-	return slowest;
+	return sum(address_s, wiring->chips[chip].access_s);
 }
 
 // Clear is never latched. An asynchronous pin obeys it while the address settles; a synchronous one looks only at the edge.
 static void measure_stage(const struct trial *trial, enum stage stage, struct stage_glitches *result)
 {
 	const struct stage_wiring *wired = wiring_stage(&trial->wiring, stage);
-	const struct chip *slowest = &trial->wiring.chips[slowest_chip(&trial->wiring, stage)];
-	const struct chip *clears = clears_at_once(wired) ? slowest_with_clear(&trial->wiring, stage) : NULL;
-	if (wired->outputs == OUTPUTS_DIRECT) {
+	const struct chip *chips = trial->wiring.chips;
+	const size_t shown = slowest_chip(&trial->wiring, stage, 1u << DATA_SIGNAL | 1u << DATA_KIND | 1u << DATA_STEP);
+	const size_t clears = clears_at_once(wired) ? slowest_chip(&trial->wiring, stage, 1u << DATA_CLEAR) : SIZE_MAX;
+	if (wired->outputs == OUTPUTS_DIRECT && shown != SIZE_MAX) {
 		result->direct = true;
-		result->unsettled_part = slowest->label;
-		result->unsettled_s = answer_time(trial, stage, slowest);
+		result->unsettled_part = chips[shown].label;
+		result->unsettled_s = answer_time(trial, stage, shown);
 	}
-	if (clears != NULL) {
+	if (clears != SIZE_MAX) {
 		result->async_clear = true;
-		result->clear_part = clears->label;
+		result->clear_part = chips[clears].label;
 		result->clear_unsettled_s = answer_time(trial, stage, clears);
 	}
 }

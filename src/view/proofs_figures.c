@@ -325,9 +325,13 @@ static void put_glitches(struct text *out, const struct proofs *proofs)
 	const struct stage_glitches *line = &glitches->stages[STAGE_LINE], *frame = &glitches->stages[STAGE_FRAME];
 	put_decoded(out, proofs);
 	put_stage_glitches(out, proofs, STAGE_LINE);
-	put_stage_glitches(out, proofs, STAGE_FRAME);
+	if (plan_of(proofs)->machine.form == FORM_LINE_FRAME)
+		put_stage_glitches(out, proofs, STAGE_FRAME);
 	if (!line->direct && !line->async_clear && !frame->direct && !frame->async_clear && !glitches->has_field_signals)
 		text_put(out, ", and the data outputs are latched");
+	const struct machine_plan *machine = &plan_of(proofs)->machine;
+	if (machine->form == FORM_LINE_FRAME && machine->frame.advance == ADVANCE_COUNT && machine->frame.clear == CLEAR_SYNC)
+		text_put(out, "; gate clear of the frame stage with step: a 74x163 obeys it at every edge, enabled or not");
 }
 
 // " of the shortest cell's 628.571 ns", " of 314.286 ns (1/2 of the shortest cell)"; or line.

@@ -24,11 +24,25 @@ bool set_misses(const struct set_view *view, enum proof_kind kind)
 	return false;
 }
 
+// The last of three or more numbers that follow one another from an index on; the index itself if there are fewer.
+static size_t end_of_run(const uint32_t *banks, size_t index, size_t count)
+{
+	size_t last = index;
+	while (last + 1 < count && banks[last + 1] == banks[last] + 1)
+		last++;
+	return last >= index + 2 ? last : index;
+}
+
 void view_banks(struct text *out, const struct plan *plan, const uint32_t *banks, size_t count)
 {
 	text_put(out, count == 1 ? "bank " : "banks ");
-	for (size_t index = 0; index < count; index++)
-		text_printf(out, "%s%" PRIu32, index == 0 ? "" : index + 1 == count ? " and " : ", ", banks[index]);
+	for (size_t index = 0; index < count;) {
+		const size_t last = end_of_run(banks, index, count);
+		text_printf(out, "%s%" PRIu32, index == 0 ? "" : last + 1 == count ? " and " : ", ", banks[index]);
+		if (last > index)
+			text_printf(out, " to %" PRIu32, banks[last]);
+		index = last + 1;
+	}
 	text_printf(out, ": %s (%s)\n", plan->name, plan->file_name);
 }
 

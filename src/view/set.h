@@ -26,7 +26,7 @@ bool set_comes_home(const struct set_view *view);
 // Whether a proof that is advice fails in any bank. Cannot fail.
 bool set_misses(const struct set_view *view, enum proof_kind kind);
 
-// Puts "bank 0: NAME (FILE)", "banks 2 and 3: …" for a plan of a set and the banks that show it.
+// Puts "bank 0: NAME (FILE)", "banks 2 and 3: …", "banks 1 and 3 to 255: …" for a plan of a set and the banks that show it.
 void view_banks(struct text *out, const struct plan *plan, const uint32_t *banks, size_t count);
 
 // Puts the report: of a set, each plan's under a heading, and a line on the jumpers last. When memory is out,

@@ -82,4 +82,29 @@ same 'a trap in one bank: exit status' 1 $?
 holds 'a trap in one bank: jumpers' grep -q '^FAIL  jumpers   may not change while the machine runs' stdout
 same 'a trap in one bank: the other banks are good' 1 "$(grep -c '^FAIL  power-up' stdout)"
 holds 'a trap in one bank: which byte' grep -q 'byte 0xEF at address 0x0017 of chip rom0' stdout
+# Codes that the planner chose are read out of the images, and the decoder is wired once: what each bank has for itself is not enough.
+for name in ebb flood; do
+	cat >"$name.yaml" <<PLAN
+scanlatch: 1
+name: $name
+clock: { master: 1 MHz, cell: 1 tick }
+signals: { sync: { role: composite sync, active: high, from: { field: top, codes: auto } } }
+lines: { only: { regions: [ { region: sync, cells: 1, assert: [sync], hold: { top: $([ $name = ebb ]; echo $?) } }, { region: rest, cells: 1 } ] } }
+frame: [ { repeat: 1, line: only } ]
+machine: { form: loop, state: 2 bits, fields: { top: 1 } }
+chips: [ { label: U1, part: 28C64, speed: 150 ns, address: [state.0, state.1, bank.0, -, -, -, -, -, -, -, -, -, -], data: [next.0, next.1, -, -, -, -, -, -] } ]
+PLAN
+	"$SCANLATCH" build "$name.yaml" --format bin -o alone >stdout
+	same "$name: build" 0 $?
+done
+printf 'scanlatch-set: 1\nname: tide\nbank: 1 bit\nbanks: { 0: ebb.yaml, 1: flood.yaml }\n' >tide.yaml
+# Four bytes of each bank in turn.
+python3 -c '
+ebb, flood = (open("alone/%s.U1.bin" % name, "rb").read() for name in ("ebb", "flood"))
+open("both.bin", "wb").write(b"".join((ebb, flood)[at // 4 % 2][at:at + 4] for at in range(0, len(ebb), 4)))'
+"$SCANLATCH" prove tide.yaml U1=both.bin >stdout 2>stderr
+same 'codes that differ between banks: exit status' 1 $?
+holds 'codes that differ between banks: said' grep -qx 'FAIL  signals   sync is asserted in code 1, but in code 0 in bank 0: the decoder is the same' stdout
+sed 's/^bank: .*/bank: 8 bits/' jetty.yaml >wide.yaml
+same 'banks in ranges' 'banks 0, 1 and 3 to 255: short (short.yaml)' "$("$SCANLATCH" check wide.yaml | grep '^banks')"
 finish

@@ -139,7 +139,7 @@ static void test_plans_may_differ(void **state)
 	struct set *set = read_set_text(reading, "kit.yaml", two_banks);
 	static const char *const chips = "{ part: 28C16, speed: 150 ns }";
 	const char *texts[] = {
-		plan_text(reading, 1, "sync: { role: composite sync, active: low }, lamp: { role: plain, active: low, from: { field: top, codes: [0] } }",
+		plan_text(reading, 1, "sync: { role: composite sync, active: low }, lamp: { role: plain, active: high, from: { field: top, codes: [0] } }",
 	              "form: loop, state: 3 bits, fields: { top: 2 }, start: 1", chips, ""),
 		plan_text(reading, 3, "lit: { role: plain, active: high }, lamp: { role: plain, active: high, from: { field: lit_by, codes: [0] } }",
 	              "form: loop, state: 3 bits, fields: { lit_by: 2 }", chips, "timing: { share: 1/2 }\n"),
