@@ -3,6 +3,7 @@
 
 #include "base/arena.h"
 #include "proof/line_frame.h"
+#include "proof/line_jump.h"
 
 static const char *number_words(const struct trial *trial, const struct counterexample *found, const char *name, uint32_t number,
                                 uint32_t expected)
@@ -48,11 +49,12 @@ static struct counterexample end_fault(const struct trial *trial)
 	return found;
 }
 
-struct counterexample line_frame_departure(const struct trial *trial)
+static struct counterexample find_departure(const struct trial *trial)
 {
 	const struct timeline *timeline = trial->timeline;
 	const struct lap *lap = &trial->lap;
 	const uint32_t frame_bits = trial->numbered_bits >> trial->at.frame << trial->at.frame;
+	const uint32_t line_mask = ((uint32_t)1 << trial->wiring.line.state_bits) - 1;
 	for (uint32_t line = 0, cell = 0; line < timeline->line_count; line++) {
 		const uint32_t end = timeline->lines[line].first_cell + timeline->types[timeline->lines[line].type].cells;
 		for (; cell < end; cell++) {
@@ -63,7 +65,60 @@ struct counterexample line_frame_departure(const struct trial *trial)
 				return frame_fault(trial, cell, state, trial->numbered[after], cell + 1 == end);
 			if (wrong != 0)
 				return line_fault(trial, cell, state, trial->numbered[after]);
+			if (cell + 1 == end && ((state ^ lap->states[0]) & line_mask) != 0)
+				return line_fault(trial, cell, state, lap->states[0]);
 		}
 	}
 	return lap->state_after != lap->states[0] ? end_fault(trial) : (struct counterexample){.present = false};
+}
+
+// The first cell with a held bit or a data pin wrong; UINT32_MAX if there is none. The latched pins of cell 0 come from the
+// last cell, and count as wrong after it.
+static uint32_t first_wrong_cell(const struct trial *trial)
+{
+	const uint64_t data = trial->wiring.line.data_signals | trial->wiring.frame.data_signals;
+	const uint32_t cells = trial->timeline->cell_count;
+	const bool latched = trial->wiring.line.outputs == OUTPUTS_REGISTERED;
+	bool at_end = false;
+	for (uint32_t cell = 0; cell < cells; cell++) {
+		const uint64_t wrong = (trial->lap.pins[cell] ^ trial->expected[cell]) & data & sure_pins(trial, cell);
+		const bool held = wrong_held_bits(trial, cell, trial->lap.states[cell]) != 0;
+		at_end = at_end || (cell == 0 && latched && wrong != 0);
+		if (held || (wrong != 0 && !(cell == 0 && latched)))
+			return cell;
+	}
+	return at_end ? cells : UINT32_MAX;
+}
+
+// The first line of another kind than its type's number, no later than some cell.
+static struct counterexample find_wrong_kind(const struct trial *trial, uint32_t until)
+{
+	const struct timeline *timeline = trial->timeline;
+	struct counterexample found = {.present = false};
+	for (uint32_t line = 0; line < timeline->line_count && timeline->lines[line].first_cell <= until; line++) {
+		const uint32_t state = trial->lap.states[timeline->lines[line].first_cell], type = timeline->lines[line].type;
+		const uint32_t kind = machine_row_address(trial->machine, STAGE_LINE, state) >> trial->wiring.line.state_bits;
+		if (kind == type || trial->wiring.kind_bits == 0)
+			continue;
+		found = blame_kind(trial, line, kind ^ type);
+		found.what = arena_format(trial->proofs->arena, "this line is of kind %" PRIu32 ", expected %" PRIu32 " (%s)", kind, type,
+		                          timeline->plan->lines[type].name);
+		break;
+	}
+	return found;
+}
+
+bool line_frame_depart(struct trial *trial)
+{
+	struct counterexample found = find_departure(trial), kind = {.present = false};
+	const uint32_t wrong_at = first_wrong_cell(trial);
+	bool certain = false;
+	if (found.present && !find_line_jump(trial, wrong_at, &found, &certain))
+		return false;
+	if (found.present || wrong_at != UINT32_MAX)
+		kind = find_wrong_kind(trial, found.present && found.cell < wrong_at ? found.cell : wrong_at);
+	trial->departed_cell = kind.present ? kind.cell : found.present ? found.cell + 1 : UINT32_MAX;
+	trial->departure = kind.present ? kind : found;
+	trial->departure_certain = kind.present || certain;
+	return !trial->departure.present || trial->departure.what != NULL;
 }
