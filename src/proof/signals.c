@@ -89,16 +89,18 @@ static struct counterexample pin_fault(const struct trial *trial, uint32_t cell,
 static const char *held_words(const struct trial *trial, uint32_t cell, uint32_t wrong)
 {
 	const struct machine_plan *machine = &trial->timeline->plan->machine;
-	uint32_t state = trial->lap.states[cell], held = trial->timeline->hold_value[cell];
+	const uint32_t mask_of_stage = (uint32_t)(((uint64_t)1 << trial->wiring.line.state_bits) - 1);
+	const uint32_t state = trial->lap.states[cell] & mask_of_stage, held = trial->timeline->hold_value[cell];
+	const char *name = trial->wiring.form == FORM_LOOP ? "state" : "H";
 	for (size_t index = 0; index < machine->field_count; index++) {
 		const struct field *field = &machine->fields[index];
 		uint32_t mask = field_mask(field);
 		if ((mask & wrong) != 0 && (mask & ~trial->timeline->hold_mask[cell]) == 0)
-			return arena_format(trial->proofs->arena, "%s is %" PRIu32 ", expected %" PRIu32 " (state 0x%" PRIX32 ")",
-			                    field->name, field_value(field, state), field_value(field, held), state);
+			return arena_format(trial->proofs->arena, "%s is %" PRIu32 ", expected %" PRIu32 " (%s 0x%" PRIX32 ")",
+			                    field->name, field_value(field, state), field_value(field, held), name, state);
 	}
-	return arena_format(trial->proofs->arena, "held bits of state 0x%" PRIX32 " are 0x%" PRIX32 ", expected 0x%" PRIX32,
-	                    state, state & trial->timeline->hold_mask[cell], held);
+	return arena_format(trial->proofs->arena, "held bits of %s 0x%" PRIX32 " are 0x%" PRIX32 ", expected 0x%" PRIX32,
+	                    name, state, state & trial->timeline->hold_mask[cell], held);
 }
 
 uint32_t wrong_held_bits(const struct trial *trial, uint32_t cell, uint32_t state)
