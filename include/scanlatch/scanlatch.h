@@ -49,7 +49,8 @@ typedef struct scanlatch_plan scanlatch_plan;
 /* Reads a plan from memory (copied) and lays out its timeline. `name` is what messages call it; its last part becomes the
  * manifest's file name. NULL after adding at least one error to messages. The messages keep the text, so they must outlive the plan. */
 scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t length, scanlatch_messages *messages);
-/* The same from a file; "-" is standard input, and called so. */
+/* The same from a file; "-" is standard input, and called so. The file may also hold a set: then its plans are read too, and the result
+ * stands for all of them: its name is the set's, its chips are those that they share, its images hold every bank, and its proofs judge each. */
 scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *messages);
 void scanlatch_plan_destroy(scanlatch_plan *plan);
 
@@ -124,7 +125,7 @@ char *scanlatch_proofs_missed(const scanlatch_proofs *proofs);
 /* The report, a line for each proof. NULL when memory is out. */
 char *scanlatch_proofs_text(const scanlatch_proofs *proofs, bool colour);
 /* { "name": of the plan, "failed": true if a must failed, "missed": [names of advice that fails], "proofs": { … } }, the last as
- * src/view/proofs.h says. NULL when memory is out. */
+ * src/view/proofs.h says; of a set, "banks" and "jumpers" instead, as src/view/set.h says. NULL when memory is out. */
 char *scanlatch_proofs_json(const scanlatch_proofs *proofs);
 
 /* The manifest of a build, as a JSON document. Which files were written for each chip: bit 0 .bin, bit 1 .hex. NULL when memory is out. */

@@ -33,15 +33,10 @@ bool read_plan_file(struct arena *arena, const char *path, char **bytes, size_t 
 	return read_file(arena, path, "a plan", SCANLATCH_PLAN_BYTES, bytes, length, messages);
 }
 
-// Says what is wrong with a set and its plans, or that nothing more is done with it.
-static void judge_set(const char *name, const char *bytes, size_t length, scanlatch_messages *messages)
+static scanlatch_plan *read_set(const char *name, const char *bytes, size_t length, scanlatch_messages *messages)
 {
-	struct plan_set *plans = plan_set_load(name, bytes, length, messages);
-	if (plans != NULL) {
-		const struct place place = {source_of_name(messages, name), 0, 0};
-		diagnose(messages->diagnostics, RULE_NOT_YET, place, "sets are not carried out by this version yet");
-	}
-	plan_set_destroy(plans);
+	struct plan_set *set = plan_set_load(name, bytes, length, messages);
+	return set != NULL ? plan_of_set(set, messages) : NULL;
 }
 
 scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *messages)
@@ -55,7 +50,7 @@ scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *m
 	} else if (read_plan_file(arena, path, &bytes, &length, messages)) {
 		const struct source seen = {source_label(path), bytes, length};
 		if (source_is_set(&seen))
-			judge_set(seen.name, bytes, length, messages);
+			plan = read_set(seen.name, bytes, length, messages);
 		else
 			plan = scanlatch_plan_read(seen.name, bytes, length, messages);
 	}

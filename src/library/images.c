@@ -4,22 +4,32 @@
 #include "catalogue/catalogue.h"
 #include "image/codec.h"
 #include "library/library.h"
+#include "plan/characters.h"
 #include "view/listing.h"
+#include "view/set.h"
+
+// Where a member's frame begins, as far as its plan tells.
+static struct member_images begin_as_planned(const struct plan *plan)
+{
+	const struct machine_plan *machine = &plan->machine;
+	const bool counted = machine->line.advance == ADVANCE_COUNT;
+	return (struct member_images){.has_start = machine->has_start || counted, .start = counted ? 0 : machine->start};
+}
 
 scanlatch_images *scanlatch_images_create(const scanlatch_plan *plan)
 {
 	struct arena *arena = arena_create();
 	scanlatch_images *images = arena != NULL ? arena_alloc(arena, sizeof *images) : NULL;
 	struct image *chips = images != NULL ? arena_array(arena, plan->plan->chip_count, sizeof *chips) : NULL;
-	const struct source **sources = chips != NULL ? arena_array(arena, plan->plan->chip_count, sizeof *sources) : NULL;
+	struct member_images *members = chips != NULL ? arena_array(arena, plan->member_count, sizeof *members) : NULL;
+	const struct source **sources = members != NULL ? arena_array(arena, plan->plan->chip_count, sizeof *sources) : NULL;
 	if (sources == NULL) {
 		arena_destroy(arena);
 		return NULL;
 	}
-	const struct machine_plan *machine = &plan->plan->machine;
-	const bool counted = machine->line.advance == ADVANCE_COUNT;
-	*images = (scanlatch_images){.arena = arena, .plan = plan, .images = chips, .sources = sources,
-	                             .has_start = machine->has_start || counted, .start = counted ? 0 : machine->start};
+	*images = (scanlatch_images){.arena = arena, .plan = plan, .members = members, .images = chips, .sources = sources};
+	for (size_t index = 0; index < plan->member_count; index++)
+		members[index] = begin_as_planned(plan->members[index].plan);
 	return images;
 }
 
@@ -27,21 +37,34 @@ void scanlatch_images_destroy(scanlatch_images *images)
 {
 	if (images == NULL)
 		return;
-	table_destroy(images->table);
+	for (size_t index = 0; index < images->plan->member_count; index++)
+		table_destroy(images->members[index].table);
 	arena_destroy(images->arena);
 }
 
 void scanlatch_images_begin_as(scanlatch_images *images, const scanlatch_images *made)
 {
-	if (made->table == NULL)
-		return;
-	images->has_start = true;
-	images->start = made->table->state_of_cell[0];
+	for (size_t index = 0; index < images->plan->member_count; index++) {
+		if (made->members[index].table == NULL)
+			continue;
+		images->members[index].has_start = true;
+		images->members[index].start = made->members[index].table->state_of_cell[0];
+	}
 }
 
 static void report_memory(scanlatch_messages *messages)
 {
 	diagnose(messages->diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
+}
+
+static bool create_tables(scanlatch_images *images, struct diagnostics *diagnostics)
+{
+	bool good = true;
+	for (size_t index = 0; index < images->plan->member_count; index++) {
+		images->members[index].table = table_create(images->plan->members[index].timeline, diagnostics);
+		good = good && images->members[index].table != NULL;
+	}
+	return good;
 }
 
 scanlatch_images *scanlatch_images_make(const scanlatch_plan *plan, scanlatch_messages *messages)
@@ -51,11 +74,8 @@ scanlatch_images *scanlatch_images_make(const scanlatch_plan *plan, scanlatch_me
 		report_memory(messages);
 		return NULL;
 	}
-	images->table = table_create(plan->timeline, messages->diagnostics);
-	if (images->table != NULL && images_fill((const struct table *const[]){images->table}, 1, images->arena, images->images))
+	if (create_tables(images, messages->diagnostics) && banks_fill(images, messages))
 		return images;
-	if (images->table != NULL)
-		report_memory(messages);
 	scanlatch_images_destroy(images);
 	return NULL;
 }
@@ -174,15 +194,16 @@ bool scanlatch_images_read(scanlatch_images *images, const char *label, const ch
 bool images_complete(const scanlatch_images *images, const char *folder, scanlatch_messages *messages)
 {
 	const struct plan *plan = images->plan->plan;
+	const char *name = scanlatch_plan_name(images->plan);
 	bool complete = true;
 	for (size_t chip = 0; chip < plan->chip_count; chip++) {
 		if (images->images[chip].bytes != NULL)
 			continue;
-		diagnose(messages->diagnostics, RULE_IMAGE_MISSING, (struct place){plan->source, 0, 0}, "there is no image for chip \"%s\" (%s)",
+		diagnose(messages->diagnostics, RULE_IMAGE_MISSING, (struct place){images->plan->source, 0, 0}, "there is no image for chip \"%s\" (%s)",
 		         plan->chips[chip].label, plan->chips[chip].part->name);
 		if (folder != NULL)
-			diagnose_hint(messages->diagnostics, "the folder %s has neither %s.%s.bin nor %s.%s.hex", folder, plan->name,
-			              plan->chips[chip].label, plan->name, plan->chips[chip].label);
+			diagnose_hint(messages->diagnostics, "the folder %s has neither %s.%s.bin nor %s.%s.hex", SHORT(folder), name,
+			              plan->chips[chip].label, name, plan->chips[chip].label);
 		complete = false;
 	}
 	return complete;
@@ -212,8 +233,15 @@ char *scanlatch_images_hex(const scanlatch_images *images, size_t chip, unsigned
 char *scanlatch_images_listing(const scanlatch_images *images)
 {
 	struct text text = {0};
-	if (images->table == NULL)
-		return NULL;
-	view_listing(&text, images->table, images->images);
+	for (size_t index = 0; index < images->plan->member_count; index++) {
+		const struct member *member = &images->plan->members[index];
+		if (images->members[index].table == NULL)
+			return NULL;
+		if (images->plan->set != NULL) {
+			text_put(&text, index > 0 ? "\n# " : "# ");
+			view_banks(&text, member->plan, member->banks, member->bank_count);
+		}
+		view_listing(&text, images->members[index].table, images->images, member->banks[0]);
+	}
 	return take_string(&text);
 }

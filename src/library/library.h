@@ -17,26 +17,41 @@ struct scanlatch_messages {
 	struct arena *names;       // sources that messages quote: plans and the names of image files
 };
 
-struct scanlatch_plan {
-	struct arena *arena;           // the catalogue
-	const struct source *source;   // owned by the messages that the plan was read with
+// A plan among those of a set, or a plan alone.
+struct member {
 	struct plan *plan;
 	struct timeline *timeline;
+	uint32_t *banks;               // settings of the jumpers that show the plan
+	uint32_t bank_count;
+};
+
+struct scanlatch_plan {
+	struct arena *arena;           // the catalogue and what stands here
+	const struct source *source;   // owned by the messages that the plan was read with
+	struct plan *plan;             // the first member's: all have its chips, wiring and word
+	struct plan_set *set;          // which owns the plans; NULL for a plan alone
+	struct member *members;
+	size_t member_count;
+};
+
+// The images of a member.
+struct member_images {
+	struct table *table;       // NULL if the images were read
+	bool has_start;            // it is known where the frame begins, by the plan or by the maker
+	uint32_t start;
 };
 
 struct scanlatch_images {
 	struct arena *arena;
 	const scanlatch_plan *plan;
-	struct table *table;       // NULL if the images were read
+	struct member_images *members; // [plan->member_count]
 	struct image *images;      // [chip_count]; bytes NULL where a chip was not read
-	bool has_start;            // it is known where the frame begins, by the plan or by the maker
-	uint32_t start;
 	const struct source **sources; // [chip_count]: the file that a chip was read from, NULL where there is none
 };
 
 struct scanlatch_proofs {
 	const scanlatch_images *images;
-	struct proofs *proofs;
+	struct proofs **proofs;    // [plan->member_count]
 };
 
 // Takes the bytes of a text as a string of its own; NULL (and the text released) if it failed.
@@ -47,6 +62,9 @@ char *take_json(json_t *document);
 
 // True if every chip has its bytes; otherwise adds an error for each that has not. `folder`: where they were looked for, or NULL.
 bool images_complete(const scanlatch_images *images, const char *folder, scanlatch_messages *messages);
+
+// Fills the chips from the tables of all members, each in its banks. False after reporting; then members disagree, or memory is out.
+bool banks_fill(scanlatch_images *images, scanlatch_messages *messages);
 
 // What messages call a file: its path, or "standard input" for "-". Cannot fail.
 const char *source_label(const char *file);
@@ -70,5 +88,8 @@ struct plan_set {
 // Reads a set's bytes and the files that it names. `name` is what messages call it. NULL after reporting.
 struct plan_set *plan_set_load(const char *name, const char *bytes, size_t length, scanlatch_messages *messages);
 void plan_set_destroy(struct plan_set *plans);
+
+// Lays out a set that was loaded, and takes it over, even if that fails: then NULL after reporting.
+scanlatch_plan *plan_of_set(struct plan_set *set, scanlatch_messages *messages);
 
 #endif

@@ -4,19 +4,9 @@
 #include "catalogue/catalogue.h"
 #include "library/library.h"
 #include "view/check.h"
+#include "view/figures.h"
 #include "view/parts.h"
-
-static bool load_plan(scanlatch_plan *plan, struct diagnostics *diagnostics)
-{
-	const struct catalogue *catalogue = catalogue_load(plan->arena, diagnostics);
-	if (catalogue == NULL)
-		return false;
-	plan->plan = plan_read(plan->source, catalogue, diagnostics);
-	if (plan->plan == NULL)
-		return false;
-	plan->timeline = timeline_create(plan->plan, diagnostics);
-	return plan->timeline != NULL;
-}
+#include "view/set.h"
 
 const struct source *keep_source(struct arena *arena, const char *name, const char *bytes, size_t length)
 {
@@ -29,19 +19,84 @@ const struct source *keep_source(struct arena *arena, const char *name, const ch
 	return source->name != NULL && source->bytes != NULL ? source : NULL;
 }
 
-scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t length, scanlatch_messages *messages)
+static scanlatch_plan *new_plan(size_t members)
 {
-	const struct source *source = keep_source(messages->names, name, bytes, length);
 	struct arena *arena = arena_create();
 	scanlatch_plan *plan = arena != NULL ? arena_alloc(arena, sizeof *plan) : NULL;
-	if (source == NULL || plan == NULL) {
-		diagnose(messages->diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
+	struct member *list = plan != NULL ? arena_array(arena, members, sizeof *list) : NULL;
+	if (list == NULL) {
 		arena_destroy(arena);
 		return NULL;
 	}
-	plan->arena = arena;
+	*plan = (scanlatch_plan){.arena = arena, .members = list, .member_count = members};
+	return plan;
+}
+
+// The banks that show a listed bank's plan: of a plan alone, all that its jumpers tell apart.
+static bool list_banks(scanlatch_plan *plan, size_t index)
+{
+	struct member *member = &plan->members[index];
+	const unsigned banks = 1u << plan->plan->bank_bits;
+	member->banks = arena_array(plan->arena, banks, sizeof *member->banks);
+	for (unsigned bank = 0; member->banks != NULL && bank < banks; bank++)
+		if (plan->set == NULL || set_bank_shown(plan->set->set, bank) == index)
+			member->banks[member->bank_count++] = bank;
+	return member->banks != NULL;
+}
+
+// Lays out the members, whose plans are there, so that all that is wrong with any is told.
+static bool lay_out(scanlatch_plan *plan, struct diagnostics *diagnostics)
+{
+	bool good = true;
+	plan->plan = plan->members[0].plan;
+	for (size_t index = 0; index < plan->member_count; index++) {
+		plan->members[index].timeline = timeline_create(plan->members[index].plan, diagnostics);
+		good = good && plan->members[index].timeline != NULL;
+		if (!list_banks(plan, index)) {
+			diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
+			good = false;
+		}
+	}
+	return good;
+}
+
+static bool load_plan(scanlatch_plan *plan, struct diagnostics *diagnostics)
+{
+	const struct catalogue *catalogue = catalogue_load(plan->arena, diagnostics);
+	if (catalogue == NULL)
+		return false;
+	plan->members[0].plan = plan_read(plan->source, catalogue, diagnostics);
+	return plan->members[0].plan != NULL && lay_out(plan, diagnostics);
+}
+
+scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t length, scanlatch_messages *messages)
+{
+	const struct source *source = keep_source(messages->names, name, bytes, length);
+	scanlatch_plan *plan = source != NULL ? new_plan(1) : NULL;
+	if (plan == NULL) {
+		diagnose(messages->diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
+		return NULL;
+	}
 	plan->source = source;
 	if (load_plan(plan, messages->diagnostics))
+		return plan;
+	scanlatch_plan_destroy(plan);
+	return NULL;
+}
+
+scanlatch_plan *plan_of_set(struct plan_set *set, scanlatch_messages *messages)
+{
+	scanlatch_plan *plan = new_plan(set->set->bank_count);
+	if (plan == NULL) {
+		diagnose(messages->diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
+		plan_set_destroy(set);
+		return NULL;
+	}
+	plan->source = set->set->source;
+	plan->set = set;
+	for (size_t index = 0; index < plan->member_count; index++)
+		plan->members[index].plan = set->plans[index];
+	if (lay_out(plan, messages->diagnostics))
 		return plan;
 	scanlatch_plan_destroy(plan);
 	return NULL;
@@ -51,14 +106,18 @@ void scanlatch_plan_destroy(scanlatch_plan *plan)
 {
 	if (plan == NULL)
 		return;
-	timeline_destroy(plan->timeline);
-	plan_destroy(plan->plan);
+	for (size_t index = 0; index < plan->member_count; index++) {
+		timeline_destroy(plan->members[index].timeline);
+		if (plan->set == NULL)
+			plan_destroy(plan->members[index].plan);
+	}
+	plan_set_destroy(plan->set);
 	arena_destroy(plan->arena);
 }
 
 const char *scanlatch_plan_name(const scanlatch_plan *plan)
 {
-	return plan->plan->name;
+	return plan->set != NULL ? plan->set->set->name : plan->plan->name;
 }
 
 size_t scanlatch_plan_chips(const scanlatch_plan *plan)
@@ -76,17 +135,58 @@ size_t scanlatch_plan_chip_bytes(const scanlatch_plan *plan, size_t chip)
 	return chip_bytes(&plan->plan->chips[chip]);
 }
 
+// What is kept of one of several is kept of all.
+static void keep_both(bool *kept, bool also)
+{
+	if (kept != NULL)
+		*kept = *kept && also;
+}
+
 char *scanlatch_plan_text(const scanlatch_plan *plan, bool *kept, bool *advice_kept)
 {
 	struct text text = {0};
-	if (!view_check(&text, plan->timeline, kept, advice_kept))
-		text.failed = true;
+	if (plan->set == NULL) {
+		if (!view_check(&text, plan->members[0].timeline, kept, advice_kept))
+			text.failed = true;
+		return take_string(&text);
+	}
+	for (size_t index = 0; index < plan->member_count; index++) {
+		const struct member *member = &plan->members[index];
+		bool colour_kept = true, speed_kept = true;
+		text_put(&text, index > 0 ? "\n" : "");
+		view_banks(&text, member->plan, member->banks, member->bank_count);
+		if (!view_check(&text, member->timeline, &colour_kept, &speed_kept))
+			text.failed = true;
+		keep_both(kept, colour_kept);
+		keep_both(advice_kept, speed_kept);
+	}
 	return take_string(&text);
+}
+
+static json_t *member_json(const struct member *member, bool *kept, bool *advice_kept)
+{
+	json_t *object = json_object(), *banks = json_array();
+	for (uint32_t index = 0; index < member->bank_count; index++)
+		json_append(&banks, json_integer(member->banks[index]));
+	json_put(&object, "banks", banks);
+	json_put(&object, "check", view_check_json(member->timeline, kept, advice_kept));
+	return object;
 }
 
 char *scanlatch_plan_json(const scanlatch_plan *plan, bool *kept, bool *advice_kept)
 {
-	return take_json(view_check_json(plan->timeline, kept, advice_kept));
+	if (plan->set == NULL)
+		return take_json(view_check_json(plan->members[0].timeline, kept, advice_kept));
+	json_t *object = json_object(), *banks = json_array();
+	for (size_t index = 0; index < plan->member_count; index++) {
+		bool colour_kept = true, speed_kept = true;
+		json_append(&banks, member_json(&plan->members[index], &colour_kept, &speed_kept));
+		keep_both(kept, colour_kept);
+		keep_both(advice_kept, speed_kept);
+	}
+	json_put(&object, "name", json_string(scanlatch_plan_name(plan)));
+	json_put(&object, "banks", banks);
+	return take_json(object);
 }
 
 // The catalogue in an arena of its own, which the caller destroys. NULL when memory is out.

@@ -196,7 +196,7 @@ static bool stages_fail(struct trial *trial, struct line_fault *line, uint32_t w
 bool prove_closure(struct trial *trial)
 {
 	struct closure_result *result = &trial->proofs->closure;
-	if (trial->bank == 0) {
+	if (trial->first) {
 		*result = (struct closure_result){.lines = trial->timeline->line_count, .cells = trial->timeline->cell_count,
 		                                  .ticks = trial->lap.ticks, .period_cells = trial->lap.return_cells,
 		                                  .start_state = trial->lap.states[0]};

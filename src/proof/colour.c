@@ -280,7 +280,7 @@ bool prove_colour(struct trial *trial)
 	if (!demand_phase(trial, &phases, &result))
 		return false;
 	bool fails_first = proofs->proof[PROOF_COLOUR].verdict == VERDICT_FAIL && !failed_before;
-	if (trial->bank == 0 || fails_first)
+	if (trial->first || fails_first)
 		proofs->colour = result;
 	return true;
 }

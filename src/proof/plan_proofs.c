@@ -35,7 +35,7 @@ struct proofs *proofs_of_plan(const struct timeline *timeline)
 	for (unsigned kind = 0; kind < PROOF_COUNT; kind++)
 		if (kind != PROOF_COLOUR && kind != PROOF_SPEED)
 			proofs->proof[kind].verdict = VERDICT_ABSENT;
-	struct trial trial = {.proofs = proofs, .timeline = timeline, .arena = arena_create(), .wiring = wiring_of(timeline->plan)};
+	struct trial trial = {.proofs = proofs, .timeline = timeline, .first = true, .arena = arena_create(), .wiring = wiring_of(timeline->plan)};
 	const bool judged = trial.arena != NULL && lap_of_plan(&trial) && prove_colour(&trial) && prove_speed(&trial);
 	arena_destroy(trial.arena);
 	if (judged)

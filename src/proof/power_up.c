@@ -10,7 +10,7 @@ static const char not_closed[] = "not judged: the frame does not close";
 static void note_longest(struct trial *trial, struct power_up_result *result)
 {
 	const struct timeline *timeline = trial->timeline;
-	if (trial->bank > 0 && trial->ways->longest_cells <= result->longest_cells)
+	if (!trial->first && trial->ways->longest_cells <= result->longest_cells)
 		return;
 	result->longest_cells = trial->ways->longest_cells;
 	result->longest_state = trial->ways->longest_state;

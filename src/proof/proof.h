@@ -172,7 +172,8 @@ struct proof {
 struct proofs {
 	struct arena *arena;
 	const struct timeline *timeline;
-	uint32_t banks;                          // proved: 2^bank_bits
+	const uint32_t *bank_numbers;            // [banks]: the settings of the jumpers that were proved
+	uint32_t banks;
 	struct proof proof[PROOF_COUNT];
 	struct closure_result closure;
 	struct signals_result signals;
@@ -186,9 +187,12 @@ struct proofs {
 	size_t *code_counts;
 };
 
-// Proves images (one for each chip of the plan, of its capacity) against a timeline. `start_state` is the plan's start where it has one (or
-// 0 for a counter); otherwise pass has_start false and the prover finds the frame itself: see frame_find. NULL when memory is out.
+// Proves images (one for each chip of the plan, of its capacity) against a timeline, in each of the plan's banks. `start_state` is where the line stage's state begins, if has_start says that it is known: the plan's start, or 0 for a
+// counter; otherwise the prover finds the frame itself: see frame_find. NULL when memory is out.
 struct proofs *proofs_run(const struct timeline *timeline, const struct image *images, bool has_start, uint32_t start_state);
+// The same in the given banks alone: of a set, those that show a plan. NULL: 0 … banks-1.
+struct proofs *proofs_run_banks(const struct timeline *timeline, const struct image *images, const uint32_t *bank_numbers, uint32_t banks,
+                                bool has_start, uint32_t start_state);
 // What can be said of a plan without images: colour and speed, as its timeline has them; all other proofs are absent. NULL when memory is
 // out. Freed with proofs_destroy.
 struct proofs *proofs_of_plan(const struct timeline *timeline);

@@ -67,7 +67,6 @@ struct proofs *proofs_alloc(const struct timeline *timeline)
 	}
 	proofs->arena = arena;
 	proofs->timeline = timeline;
-	proofs->banks = (uint32_t)1 << plan->bank_bits;
 	proofs->sweeps = arena_array(arena, plan->sweep_count, sizeof *proofs->sweeps);
 	proofs->codes = arena_array(arena, plan->signal_count, sizeof *proofs->codes);
 	proofs->code_counts = arena_array(arena, plan->signal_count, sizeof *proofs->code_counts);
@@ -105,7 +104,9 @@ static bool trial_prove(struct trial *trial, bool has_start, uint32_t start)
 static bool prove_banks(struct trial *trial, bool has_start, uint32_t start_state)
 {
 	bool proved = true;
-	for (trial->bank = 0; proved && trial->bank < trial->proofs->banks; trial->bank++) {
+	for (uint32_t index = 0; proved && index < trial->proofs->banks; index++) {
+		trial->bank = trial->proofs->bank_numbers[index];
+		trial->first = index == 0;
 		trial->lap = (struct lap){0};
 		trial->departed_cell = UINT32_MAX;
 		trial->ways = NULL;
@@ -125,11 +126,30 @@ static void show_codes(const struct trial *trial)
 	}
 }
 
+// Lists the banks: the given ones, or all from 0 on. False when memory is out.
+static bool list_banks(struct proofs *proofs, const uint32_t *bank_numbers, uint32_t banks)
+{
+	uint32_t *list = arena_array(proofs->arena, banks, sizeof *list);
+	for (uint32_t index = 0; list != NULL && index < banks; index++)
+		list[index] = bank_numbers != NULL ? bank_numbers[index] : index;
+	proofs->bank_numbers = list;
+	proofs->banks = banks;
+	return list != NULL;
+}
+
 struct proofs *proofs_run(const struct timeline *timeline, const struct image *images, bool has_start, uint32_t start_state)
 {
+	return proofs_run_banks(timeline, images, NULL, (uint32_t)1 << timeline->plan->bank_bits, has_start, start_state);
+}
+
+struct proofs *proofs_run_banks(const struct timeline *timeline, const struct image *images, const uint32_t *bank_numbers, uint32_t banks,
+                                bool has_start, uint32_t start_state)
+{
 	struct proofs *proofs = proofs_alloc(timeline);
-	if (proofs == NULL)
+	if (proofs == NULL || !list_banks(proofs, bank_numbers, banks)) {
+		proofs_destroy(proofs);
 		return NULL;
+	}
 	struct trial trial = {.proofs = proofs, .timeline = timeline, .images = images};
 	trial.wiring = wiring_of(timeline->plan);
 	trial.expected = timeline_pins(timeline, proofs->arena);

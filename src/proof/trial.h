@@ -42,7 +42,8 @@ struct trial {
 	const struct machine *machine;
 	const uint32_t *numbered;     // [cell_count]: the bits of the state that count lines and cells, as planned; NULL in a loop machine
 	uint32_t numbered_bits;       // which bits these are
-	uint32_t bank;
+	uint32_t bank;                // the jumpers' setting
+	bool first;                   // of the trials of these proofs
 	bool has_start;               // the plan's; otherwise `start` was found in the images
 	uint32_t start;
 	struct lap lap;

@@ -157,7 +157,8 @@ bool line_frame_fill(struct table *table, struct arena *scratch, struct diagnost
 	return good && fields_agree && line_states_choose(table, scratch, diagnostics) && agrees;
 }
 
-// The line type that a row of the line stage belongs to: the last that begins at or before it.
+// The line type that a row of the line stage belongs to: the last that begins at or before it. (One without rows begins where the
+// next one does.)
 static uint32_t type_of_row(const struct table *table, uint32_t index)
 {
 	uint32_t low = 0, high = (uint32_t)table->timeline->plan->line_count - 1;
@@ -168,9 +169,6 @@ static uint32_t type_of_row(const struct table *table, uint32_t index)
 		else
 			high = middle - 1;
 	}
-	// Types without rows begin where the next one does.
-	while (table->line_of_type[low] == NO_LINE)
-		low--;
 	return low;
 }
 

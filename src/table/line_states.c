@@ -227,7 +227,8 @@ static bool report_no_start(const struct types *types, struct diagnostics *diagn
 	diagnose(diagnostics, RULE_LINE_START, types->plan->machine.line.place,
 	         "found no state that the first cells of all line types, from \"%s\" to \"%s\", can have together", line_name(types, 0),
 	         line_name(types, last));
-	diagnose_hint(diagnostics, "every line begins in one state: leave some state free of holds in all line types, or give the state another bit");
+	diagnose_hint(diagnostics,
+	              "every line begins in one state: leave some state free of holds in all line types, or give the state another bit");
 	return false;
 }
 

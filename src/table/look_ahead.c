@@ -75,7 +75,8 @@ static void hint_remedies(const struct comparison *comparison, const struct diff
 	const bool helps = is_data && would_agree(timeline, difference->left, difference->signal, other);
 	const char *alike = difference->ahead > 0 ? "what follows them begins" : "what comes before them ends";
 	if (helps)
-		diagnose_hint(comparison->diagnostics, "start the lines elsewhere, say in the front porch, so that %s alike, or give the line stage outputs: %s",
+		diagnose_hint(comparison->diagnostics,
+		              "start the lines elsewhere, say in the front porch, so that %s alike, or give the line stage outputs: %s",
 		              alike, outputs);
 	else
 		diagnose_hint(comparison->diagnostics, "start the lines elsewhere, say in the front porch, so that %s alike", alike);
@@ -177,7 +178,8 @@ static void report_changes(struct comparison *comparison, uint32_t line, uint32_
 		         asserted_words(comparison->table->pins[first + cell] >> index & 1), cell, timeline_region_name(timeline, first + cell));
 		diagnose_also(comparison->diagnostics, plan->lines[type].place, "line type \"%s\" is here", plan->lines[type].name);
 		if (signal->lead_cells != 0)
-			diagnose_hint(comparison->diagnostics, "its lead of %lld cell%s moves its edges away from the lines' ends; leave it out, or give it stage: line",
+			diagnose_hint(comparison->diagnostics,
+			              "its lead of %lld cell%s moves its edges away from the lines' ends; leave it out, or give it stage: line",
 			              (long long)signal->lead_cells, signal->lead_cells == 1 || signal->lead_cells == -1 ? "" : "s");
 		else
 			diagnose_hint(comparison->diagnostics, "assert it in all regions of the line type or in none, or give it stage: line");

@@ -191,13 +191,33 @@ static void put_frame(struct text *out, const struct timeline *timeline)
 	text_put(out, "\n");
 }
 
+// Says which signals of the line stage could as well come from the frame stage. False when memory is out.
+static bool put_suggestion(struct text *out, const struct timeline *timeline, struct arena *arena)
+{
+	const struct plan *plan = timeline->plan;
+	const uint64_t *pins = timeline_pins(timeline, arena);
+	const uint64_t suited = pins != NULL ? signals_for_frame(timeline, pins) : 0;
+	struct text words = {0};
+	for (size_t signal = 0; signal < plan->signal_count; signal++)
+		if (suited >> signal & 1)
+			text_printf(&words, "%s%s", words.length > 0 ? ", " : "", plan->signals[signal].name);
+	if (suited != 0) {
+		text_printf(&words, ": never changes within a line; with stage: frame it would need no bit in the line stage's word");
+		text_put_wrapped(out, text_string(&words), 0, 2);
+		text_put(out, "\n");
+	}
+	out->failed = out->failed || words.failed;
+	text_release(&words);
+	return pins != NULL;
+}
+
 bool view_check(struct text *out, const struct timeline *timeline, bool *kept, bool *advice_kept)
 {
 	const struct plan *plan = timeline->plan;
 	struct arena *arena = arena_create();
 	const uint32_t *uses = arena != NULL ? count_uses(timeline, arena) : NULL;
 	struct proofs *proofs = proofs_of_plan(timeline);
-	const bool good = uses != NULL && proofs != NULL;
+	bool good = uses != NULL && proofs != NULL;
 	if (good) {
 		put_head(out, plan);
 		text_put(out, "\n");
@@ -205,6 +225,7 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 		for (size_t type = 0; type < plan->line_count; type++)
 			put_line(out, timeline, type, uses[type]);
 		put_frame(out, timeline);
+		good = put_suggestion(out, timeline, arena);
 		text_put(out, "\n");
 		view_chips(out, plan);
 		text_put(out, "\n");

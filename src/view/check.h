@@ -21,7 +21,8 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 //                  "regions": [ { "name", "first_cell", "cells", "stretched_cells", "start_ticks", "start_us", "ticks", "us",
 //                                 "asked_ticks", "asked_us", "rounding_ticks", "rounding_us" (not of a fill),
 //                                 "asserted": [signal…] } ] } ],
-//     "frame": see view/manifest.h,
+//     "frame": see view/frame.h,
+//     "suits_frame_stage": [signals of the line stage that never change within a line] (of a line-frame machine),
 //     "chips": [ { "label", "part", "access_s", "access_ns", "address": [wire…], "data": [wire…] } ]: see view/chips.h,
 //     "proofs": { "colour", "speed" } as in view/proofs.h }
 // Exact values are strings (ticks, fractions); rounded ones are numbers. A new reference; NULL when memory is out.

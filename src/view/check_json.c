@@ -7,7 +7,7 @@
 #include "view/chips.h"
 #include "view/divider.h"
 #include "view/figures.h"
-#include "view/manifest.h"
+#include "view/frame.h"
 #include "view/proofs.h"
 
 static json_t *ticks_json(int64_t ticks)
@@ -138,6 +138,20 @@ static json_t *judgement_json(const struct timeline *timeline, bool *kept, bool 
 	return object;
 }
 
+// Signals of the line stage that could as well come from the frame stage.
+static json_t *suited_json(const struct timeline *timeline)
+{
+	struct arena *arena = arena_create();
+	const uint64_t *pins = arena != NULL ? timeline_pins(timeline, arena) : NULL;
+	const uint64_t suited = pins != NULL ? signals_for_frame(timeline, pins) : 0;
+	json_t *names = pins != NULL ? json_array() : NULL;
+	for (size_t signal = 0; signal < timeline->plan->signal_count; signal++)
+		if (suited >> signal & 1)
+			json_append(&names, json_string(timeline->plan->signals[signal].name));
+	arena_destroy(arena);
+	return names;
+}
+
 json_t *view_check_json(const struct timeline *timeline, bool *kept, bool *advice_kept)
 {
 	json_t *object = json_object();
@@ -146,6 +160,8 @@ json_t *view_check_json(const struct timeline *timeline, bool *kept, bool *advic
 	json_put(&object, "divider", view_divider_json(&timeline->plan->clock));
 	json_put(&object, "lines", lines_json(timeline));
 	json_put(&object, "frame", view_frame_json(timeline));
+	if (timeline->plan->machine.form == FORM_LINE_FRAME)
+		json_put(&object, "suits_frame_stage", suited_json(timeline));
 	json_put(&object, "chips", view_chips_json(timeline->plan));
 	json_put(&object, "proofs", judgement_json(timeline, kept, advice_kept));
 	return object;

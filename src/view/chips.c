@@ -75,6 +75,8 @@ void view_chips(struct text *out, const struct plan *plan)
 		const struct chip *chip = &plan->chips[index];
 		text_printf(out, "chip %s: %s, ", chip->label, chip->part->name);
 		text_put_time_in(out, chip->access_s, UNIT_NANOSECONDS);
+		if (plan->machine.form == FORM_LINE_FRAME)
+			text_printf(out, ", %s stage", stage_name(chip->stage));
 		text_put(out, "\n");
 		put_pins(out, plan, chip);
 	}
@@ -120,6 +122,8 @@ json_t *view_chips_json(const struct plan *plan)
 		json_t *entry = json_object();
 		json_put(&entry, "label", json_string(chip->label));
 		json_put(&entry, "part", json_string(chip->part->name));
+		if (plan->machine.form == FORM_LINE_FRAME)
+			json_put(&entry, "stage", json_string(stage_name(chip->stage)));
 		json_put_time(&entry, "access", chip->access_s, UNIT_NANOSECONDS);
 		json_put(&entry, "address", view_address_json(chip));
 		json_put(&entry, "data", view_data_json(plan, chip));

@@ -16,15 +16,17 @@ struct stage_view {
 	const struct stage_wiring *wiring;
 	enum stage stage;
 	bool two;           // the machine has another stage
+	uint32_t bank;      // the jumpers' setting
 };
 
-// The chip's word at an address of its stage: the first chip address that reads it, with open and bank pins low.
+// The chip's word at an address of its stage: the first chip address that reads it, with open pins low.
 static size_t address_of(const struct stage_view *view, const struct chip *chip, uint32_t row)
 {
 	size_t address = 0;
 	for (unsigned pin = 0; pin < chip->part->address_pins; pin++) {
 		const struct address_wire *wire = &chip->address[pin];
 		const bool high = wire->kind == ADDRESS_HIGH || (wire->kind == ADDRESS_STATE && (row >> wire->index & 1) != 0) ||
+		                  (wire->kind == ADDRESS_BANK && (view->bank >> wire->index & 1) != 0) ||
 		                  (wire->kind == ADDRESS_KIND && (row >> view->wiring->state_bits >> wire->index & 1) != 0);
 		address |= (size_t)high << pin;
 	}
@@ -223,11 +225,11 @@ static void put_line(const struct stage_view *view, uint32_t number)
 	}
 }
 
-static struct stage_view view_stage(struct text *out, const struct table *table, const struct image *images, enum stage stage)
+static struct stage_view view_stage(struct text *out, const struct table *table, const struct image *images, uint32_t bank, enum stage stage)
 {
 	return (struct stage_view){.out = out, .table = table, .images = images, .plan = table->timeline->plan,
 	                           .wiring = wiring_stage(&table->wiring, stage), .stage = stage,
-	                           .two = table->wiring.form == FORM_LINE_FRAME};
+	                           .two = table->wiring.form == FORM_LINE_FRAME, .bank = bank};
 }
 
 static void put_frame_stage(const struct stage_view *view)
@@ -242,9 +244,10 @@ static void put_frame_stage(const struct stage_view *view)
 	put_spares(view);
 }
 
-void view_listing(struct text *out, const struct table *table, const struct image *images)
+void view_listing(struct text *out, const struct table *table, const struct image *images, uint32_t bank)
 {
-	const struct stage_view line = view_stage(out, table, images, STAGE_LINE), frame = view_stage(out, table, images, STAGE_FRAME);
+	const struct stage_view line = view_stage(out, table, images, bank, STAGE_LINE);
+	const struct stage_view frame = view_stage(out, table, images, bank, STAGE_FRAME);
 	text_printf(out, "# %s: every row of the frame\n%s", line.plan->name, line.two ? "# the line stage:\n" : "");
 	put_columns(&line);
 	for (uint32_t number = 0; number < table->timeline->line_count; number++)

@@ -18,6 +18,9 @@ void view_proofs(struct text *out, const struct proofs *proofs, bool colour);
 // The same for one proof, without that last line.
 void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind kind, bool colour);
 
+// Puts a line of the same form for a must that follows from proofs: `words` say what.
+void view_must(struct text *out, const char *name, bool kept, const char *words, bool colour);
+
 // The results as an object with a key for each proof, in the order of enum proof_kind. A new reference, owned by the caller;
 // NULL when memory is out. Every proof has
 //   "verdict": "pass", "fail" or "absent" (the plan does not ask), "must": true or false (advice)

@@ -58,10 +58,8 @@ static void end_detail(struct report *report)
 	put_words(report, DETAIL_INDENT, DETAIL_WRAPPED_INDENT);
 }
 
-static void put_verdict(struct report *report, enum proof_kind kind)
+static void put_verdict(struct report *report, const struct verdict_row *row, const char *name)
 {
-	const struct verdict_row *row = row_of_verdict(report->proofs, kind);
-	const char *name = proof_name(kind);
 	const bool colour = report->colour && row->colour != NULL;
 	text_printf(report->out, "%s%s%s", colour ? row->colour : "", row->word, colour ? "\033[0m" : "");
 	text_put_repeated(report->out, ' ', GAP);
@@ -215,7 +213,7 @@ static void put_details(struct report *report, enum proof_kind kind)
 static void put_proof(struct report *report, enum proof_kind kind)
 {
 	const char *reason = reason_of(report->proofs, kind);
-	put_verdict(report, kind);
+	put_verdict(report, row_of_verdict(report->proofs, kind), proof_name(kind));
 	if (reason != NULL)
 		text_put(&report->words, reason);
 	else
@@ -239,6 +237,16 @@ void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind k
 {
 	struct report report = {out, {0}, proofs, colour};
 	put_proof(&report, kind);
+	out->failed = out->failed || report.words.failed;
+	text_release(&report.words);
+}
+
+void view_must(struct text *out, const char *name, bool kept, const char *words, bool colour)
+{
+	struct report report = {out, {0}, NULL, colour};
+	put_verdict(&report, kept ? &pass_row : &fail_row, name);
+	text_put(&report.words, words);
+	put_words(&report, FIGURES_INDENT, FIGURES_INDENT);
 	out->failed = out->failed || report.words.failed;
 	text_release(&report.words);
 }

@@ -56,7 +56,8 @@ def judge_chip(chip, folder):
 def judge(plan, folder, proofs):
     name = os.path.basename(plan)[:-len('.yaml')]
     manifest = json.loads(read(folder, name + '.manifest.json'))
-    same('keys', list(manifest), ['format', 'name', 'plan', 'chips', 'start', 'frame', 'proofs'])
+    of_set = read(plan).count(b'scanlatch-set:') == 1
+    same('keys', list(manifest), ['format', 'name', 'plan', 'chips', 'start'] + (['banks', 'jumpers'] if of_set else ['frame', 'proofs']))
     same('format', manifest['format'], 1)
     same('name', manifest['name'], name)
     same('plan', manifest['plan'], {'file': os.path.basename(plan), 'crc32': '%08x' % zlib.crc32(read(plan))})
@@ -64,13 +65,32 @@ def judge(plan, folder, proofs):
         judge_chip(chip, folder)
     listed = [file for chip in manifest['chips'] for file in chip['files']] + [name + '.manifest.json']
     same('files', sorted(listed), sorted(os.listdir(folder)))
-    frame = manifest['frame']
+    if of_set:
+        judge_banks(plan, manifest, json.loads(read(proofs)) if proofs else None)
+        return
+    judge_frame(plan, manifest['frame'])
+    if proofs:
+        same('proofs', manifest['proofs'], json.loads(read(proofs))['proofs'])
+
+
+def judge_frame(plan, frame):
     master = re.search(rb'master: *([0-9./]+) *([kM]?)Hz', read(plan))
     hertz = fractions.Fraction(master[1].decode()) * {b'': 1, b'k': 1000, b'M': 1000000}[master[2]]
     same('rate', fractions.Fraction(frame['rate']['fraction']), hertz / int(frame['ticks']))
     check(abs(frame['rate']['decimal'] - float(hertz / int(frame['ticks']))) < 1e-6, 'decimal rate', frame['rate'])
-    if proofs:
-        same('proofs', manifest['proofs'], json.loads(read(proofs))['proofs'])
+
+
+def judge_banks(path, manifest, proved):
+    """Every bank is some plan's, whose file is what the manifest says."""
+    same('banks', sorted(bank for entry in manifest['banks'] for bank in entry['banks']), sorted({start['bank'] for start in manifest['start']}))
+    for index, entry in enumerate(manifest['banks']):
+        plan = os.path.join(os.path.dirname(path), entry['plan']['file'])
+        same('plan of a bank', entry['plan']['crc32'], '%08x' % zlib.crc32(read(plan)))
+        judge_frame(plan, entry['frame'])
+        if proved:
+            same('proofs of a bank', entry['proofs'], proved['banks'][index]['proofs'])
+    if proved:
+        same('jumpers', manifest['jumpers'], proved['jumpers'])
 
 
 judge(sys.argv[1], sys.argv[2], sys.argv[3] if len(sys.argv) > 3 else None)

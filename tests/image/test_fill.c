@@ -435,6 +435,14 @@ static void test_spare_kinds(void **state)
 		0xF4, 0xF4, 0xF4, 0xF4,
 	};
 	assert_bytes(&image, expected, sizeof expected);
+	// With the kind's bits in each other's place, those of kinds 1 and 2 change.
+	chip->address[2].index = 1;
+	chip->address[3].index = 0;
+	assert_true(fill_alone(&two.table, bench->arena, &image));
+	assert_memory_equal(image.bytes, expected, 4);
+	assert_memory_equal(image.bytes + 4, expected + 8, 4);
+	assert_memory_equal(image.bytes + 8, expected + 4, 4);
+	assert_memory_equal(image.bytes + 12, expected + 12, 4);
 	bench_destroy(bench);
 }
 

@@ -236,8 +236,14 @@ static void signals_of_whole_lines_suit_the_frame_stage(void **state)
 		assert_non_null(pins);
 		assert_int_equal(timeline_line_signals(laid.timeline, pins) & 0xF, cases[index].constant);
 		assert_int_equal(signals_for_frame(laid.timeline, pins), cases[index].suit);
+		laid.plan->signals[0].stage = STAGE_FRAME;
+		assert_int_equal(signals_for_frame(laid.timeline, pins), cases[index].suit & ~(uint64_t)1);
 		release(&laid);
 	}
+	struct laid laid = lay("", "  a: { regions: [ { region: p, cells: 1, assert: [sync] }, { region: q, cells: 1 } ] }\n", "  - { repeat: 1, line: a }\n");
+	assert_laid(&laid);
+	assert_int_equal(timeline_line_signals(laid.timeline, timeline_pins(laid.timeline, arena)) & 1, 0);
+	release(&laid);
 	arena_destroy(arena);
 }
 

@@ -151,6 +151,7 @@ def judge_built(plan, path, folder, options):
 		check_open_data_pins(chip)
 	found = prove_musts(plan, chips, start_of(plan, folder))
 	if plan.machine.form == "line-frame":
+		oracle_line_frame.check_kinds(plan, found[0])
 		oracle_line_frame.check_numbering(plan, found[0])
 		oracle_line_frame.check_spare_rows(plan, found[0])
 	else:
@@ -248,7 +249,10 @@ def damage(path, folder, options, out, seed):
 	try:
 		sampled = False
 		for bank in range(bank_count(chips)):
-			sampled |= prove_musts(plan, chips, start, bank)[3][1] is None
+			found = prove_musts(plan, chips, start, bank)
+			if plan.machine.form == "line-frame":
+				oracle_line_frame.check_numbering(plan, found[0])
+			sampled |= found[3][1] is None
 		return "unknown" if sampled else "pass", what
 	except Fault as fault:
 		return "fail", f"{what}: {fault}"

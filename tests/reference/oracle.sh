@@ -14,7 +14,8 @@ trap 'rm -rf "$work"' EXIT
 mkdir "$work/plans"
 
 holds 'plans are made' "$python" -B tests/reference/generate.py "$work/plans" "$first" "$count"
-build_all plans/*.yaml "$work"/plans/*.yaml
+mapfile -t examples < <(grep -L "^scanlatch-set" plans/*.yaml)
+build_all "${examples[@]}" "$work"/plans/*.yaml
 judge_all
 at_least $((count / 3)) '^ok .*: built$'
 at_least $((count / 20)) '^ok .*: refused'

@@ -215,23 +215,47 @@ def check_spare_rows(plan, machine, spare):
 				raise Fault(f"spare row {wrong[0]:#x}: {signal.name} is at level {1 - level}")
 
 
+def passing_state(plan, machine, before, after):
+	"""What a counter with an asynchronous clear shows between two cells; the state before where it clears nothing."""
+	stage = plan.machine.line if plan.machine.form == "line-frame" else plan.machine
+	counted = (before + 1) % (1 << stage.bits)
+	return before if not (stage.counted and stage.clear_async) or counted == after else counted
+
+
+def edges_of(plan, machine, low, width):
+	"""Codes of a field before an edge, while a state passes, and after it, for each cell of the frame."""
+	for cell in range(plan.cells):
+		before, after = machine.states[cell:cell + 2]
+		states = before, passing_state(plan, machine, before, after), after
+		yield tuple(state >> low & ((1 << width) - 1) for state in states)
+
+
+def path_flips(before, passing, after, codes):
+	"""Both halves of the way; or a passing code with a level that neither end has."""
+	if edge_flips(before, passing, codes) or edge_flips(passing, after, codes):
+		return True
+	return (before in codes) == (after in codes) != (passing in codes)
+
+
 def glitch_edges(plan, machine, signal, codes):
-	"""Cell edges at which several bits of the field change and a code in between flips the signal."""
+	"""Cell edges at which several bits of the field change and a code in between flips the signal, or a passing state does."""
 	low, width = plan.machine.fields[signal.field]
 	found = 0
 	known = {}
-	for cell in range(plan.cells):
-		edge = tuple(machine.states[place] >> low & ((1 << width) - 1) for place in (cell, cell + 1))
+	for edge in edges_of(plan, machine, low, width):
 		if edge not in known:
-			known[edge] = edge_flips(*edge, codes)
+			known[edge] = path_flips(*edge, codes)
 		found += known[edge]
 	return found
 
 
 def multi_bit_edges(plan, machine, fields):
 	"""Cell edges at which more than one bit of a decoded field changes."""
-	changes = [machine.states[cell] ^ machine.states[cell + 1] for cell in range(plan.cells)]
-	return sum(any(bin(change >> low & ((1 << width) - 1)).count("1") > 1 for low, width in fields) for change in changes)
+	many = [False] * plan.cells
+	for low, width in fields:
+		for cell, (before, passing, after) in enumerate(edges_of(plan, machine, low, width)):
+			many[cell] |= max(bin(before ^ passing).count("1"), bin(passing ^ after).count("1")) > 1
+	return sum(many)
 
 
 def edge_flips(before, after, codes):

@@ -169,9 +169,31 @@ static void test_short_in_a_kind(void **state)
 	                   "rows differ");
 	drawn_destroy(drawn);
 	drawn = draw_both("  line: { state: 3 bits }\n  frame: { state: 2 bits }\n  fields: { top: 2 }\n", "[1]", "{ region: a, cells: 6 }",
-	                  "{ region: a, cells: 2 }");
+	                  "{ region: a, cells: 4 }");
 	assert_refused(drawn, RULE_STATES_SHORT, 1);
 	assert_says(drawn, "6 states needed for this cell and those that compete with it, 4 available under the codes of \"top\"");
+	drawn_destroy(drawn);
+}
+
+// A start that another cell of a later type holds is told where the plan says it; the kind, which all cells hold, is no hold.
+static void test_words(void **state)
+{
+	(void)state;
+	struct drawn *drawn = draw_both("  line: { state: 3 bits }\n  frame: { state: 2 bits }\n  start: 5\n  fields: { at: 2..0 }\n", NULL,
+	                                "{ region: a, cells: 2 }", "{ region: a, cells: 1 }, { region: b, cells: 1, hold: { at: 5 } }");
+	assert_refused(drawn, RULE_STATE_SHARED, 1);
+	assert_says(drawn, "mole.yaml:8:10: error: line type \"mole\", cell 0, region \"a\", and line type \"mole\", cell 1, region \"b\", are held to one "
+	                   "state, 0x5");
+	drawn_destroy(drawn);
+	drawn = draw("  line: { state: 3 bits }\n  frame: { state: 2 bits }\n  fields: { top: 2 }\n",
+	             "signals:\n"
+	             "  lamp: { role: plain, active: high, from: { field: top, codes: [1] } }\n"
+	             "  bell: { role: plain, active: high, from: { field: top, codes: [1] } }\n"
+	             "lines:\n"
+	             "  pier: { regions: [ { region: a, cells: 2 } ] }\n"
+	             "  mole: { regions: [ { region: a, cells: 1 }, { region: b, cells: 1, assert: [lamp] } ] }\n" FRAME CHIPS);
+	assert_refused(drawn, RULE_CODE_CONFLICT, 1);
+	assert_says(drawn, "line type \"mole\", cell 1, region \"b\": field \"top\" has no code for \"lamp\" asserted, \"bell\" not asserted");
 	drawn_destroy(drawn);
 }
 
@@ -194,6 +216,28 @@ static void test_decoded(void **state)
 	drawn = draw_both(machine, "[0, 1]", pier, mole);
 	assert_valid(drawn);
 	assert_int_equal(drawn->table->state_of_cell[0], 8);
+	drawn_destroy(drawn);
+}
+
+// Lamp (code 3) in cell 1 of the pier, bell (code 4) in its cell 2: from the one to the other more than a bit changes in any case.
+// From 0, 5 or 6 to the lamp too, from 1, 2 and 7 not: of these the lowest, 1, is where lines begin.
+static void test_quiet_start(void **state)
+{
+	(void)state;
+	struct drawn *drawn = draw("  line: { state: 4 bits }\n  frame: { state: 2 bits }\n  fields: { top: 3..1 }\n",
+	                           "signals:\n"
+	                           "  lamp: { role: plain, active: high, from: { field: top, codes: [3] } }\n"
+	                           "  bell: { role: plain, active: high, from: { field: top, codes: [4] } }\n"
+	                           "lines:\n"
+	                           "  pier:\n"
+	                           "    regions:\n"
+	                           "      - { region: a, cells: 1 }\n"
+	                           "      - { region: b, cells: 1, assert: [lamp] }\n"
+	                           "      - { region: c, cells: 1, assert: [bell] }\n"
+	                           "      - { region: d, cells: 1 }\n"
+	                           "  mole: { regions: [ { region: a, cells: 2 } ] }\n" FRAME CHIPS);
+	assert_valid(drawn);
+	assert_int_equal(drawn->table->state_of_cell[0], 2);
 	drawn_destroy(drawn);
 }
 
@@ -224,6 +268,83 @@ static void test_counted(void **state)
 	drawn_destroy(drawn);
 }
 
+// (Multiplier and increment: Numerical Recipes, 1992.)
+static uint32_t below(uint32_t *random, uint32_t limit)
+{
+	*random = *random * 1664525u + 1013904223u;
+	return (uint32_t)((uint64_t)*random * limit >> 32);
+}
+
+// Two to six regions of a cell each: the lamp may be asserted but in the first, and fields of one or three bits may be held.
+static const char *random_regions(struct arena *arena, uint32_t *random, const char *before, uint32_t cells)
+{
+	for (uint32_t cell = 0; cell < cells; cell++) {
+		const uint32_t held = below(random, 4);
+		const char *hold = held == 0   ? arena_format(arena, ", hold: { at: %u }", (unsigned)below(random, 8))
+		                   : held == 1 ? arena_format(arena, ", hold: { end: %u }", (unsigned)below(random, 2))
+		                               : "";
+		before = arena_format(arena, "%s%s{ region: r%u, cells: 1, assert: [%s]%s }", before, cell == 0 ? "" : ", ", (unsigned)cell,
+		                      cell > 0 && below(random, 3) == 0 ? "lamp" : "", hold);
+		assert_non_null(before);
+	}
+	return before;
+}
+
+// Whether a state suits a cell of the frame: its hold, and the lamp, which code 1 of the field "top" shows.
+static bool suits(const struct drawn *drawn, uint32_t cell, uint32_t state)
+{
+	const struct timeline *timeline = drawn->timeline;
+	const uint32_t mask = timeline->has_holds ? timeline->hold_mask[cell] : 0;
+	return (mask == 0 || (state & mask) == timeline->hold_value[cell]) && (state >> 1 == 1) == (timeline->asserted[cell] & 1);
+}
+
+// Whether the cells of a line can have states of their own, the first one `start`: each set of cells has as many states that suit
+// one of them (Hall 1935).
+static bool can_start(const struct drawn *drawn, uint32_t line, uint32_t start)
+{
+	const struct frame_line *in_frame = &drawn->timeline->lines[line];
+	const uint32_t cells = drawn->timeline->types[in_frame->type].cells;
+	if (!suits(drawn, in_frame->first_cell, start))
+		return false;
+	for (uint32_t set = 0; set < 1u << (cells - 1); set++) {
+		uint32_t states = 0;
+		for (uint32_t state = 0; state < 8; state++)
+			for (uint32_t cell = 1; cell < cells; cell++)
+				if ((set >> (cell - 1) & 1) != 0 && state != start && suits(drawn, in_frame->first_cell + cell, state))
+					states |= 1u << state;
+		if (__builtin_popcount(set) > __builtin_popcount(states))
+			return false;
+	}
+	return true;
+}
+
+// States are found whenever there are any.
+static void test_random(void **state)
+{
+	(void)state;
+	uint32_t random = 7;
+	unsigned made = 0, moved = 0;
+	for (unsigned number = 0; number < 2000; number++) {
+		struct arena *arena = arena_create();
+		const char *pier = random_regions(arena, &random, "", 2 + below(&random, 5));
+		const char *mole = random_regions(arena, &random, "", 2 + below(&random, 5));
+		struct drawn *drawn =
+			draw_both("  line: { state: 3 bits, outputs: direct }\n  frame: { state: 2 bits }\n  fields: { at: 2..0, top: 2..1, end: 0 }\n", "[1]",
+		              pier, mole);
+		bool possible = false;
+		for (uint32_t start = 0; start < 8; start++)
+			possible |= can_start(drawn, 0, start) && can_start(drawn, 2, start);
+		assert_int_equal(drawn->table != NULL, possible);
+		if (possible)
+			assert_valid(drawn);
+		made += possible;
+		moved += possible && drawn->table->state_of_cell[0] != 0;
+		drawn_destroy(drawn);
+		arena_destroy(arena);
+	}
+	assert_true(made > 200 && moved > 50 && made < 1800);
+}
+
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
@@ -232,6 +353,8 @@ int main(void)
 		cmocka_unit_test(test_start_tight),          cmocka_unit_test(test_first_cells_differ),
 		cmocka_unit_test(test_start_conflicts),      cmocka_unit_test(test_short_in_a_kind),
 		cmocka_unit_test(test_decoded),              cmocka_unit_test(test_counted),
+		cmocka_unit_test(test_words),
+		cmocka_unit_test(test_quiet_start),          cmocka_unit_test(test_random),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -75,7 +75,7 @@ static void registered_outputs(void **state)
 	struct bench bench;
 	struct text text = {0};
 	fill_bench(&bench);
-	view_listing(&text, &bench.table, bench.images);
+	view_listing(&text, &bench.table, bench.images, 0);
 	assert_string_equal(text_string(&text),
 		"# bench: every row of the frame\n"
 		"# line type, line, cell, region, state, field top, word (next state, then the levels of sync), then address:byte in U1, "
@@ -99,7 +99,7 @@ static void direct_outputs(void **state)
 	bench.plan.chip_count = 1;
 	bench.plan.machine.line.outputs = OUTPUTS_DIRECT;
 	bench.table.wiring = wiring_of(&bench.plan);
-	view_listing(&text, &bench.table, bench.images);
+	view_listing(&text, &bench.table, bench.images, 0);
 	assert_string_equal(text_string(&text),
 		"# bench: every row of the frame\n"
 		"# line type, line, cell, region, state, word (next state, then the levels of sync), then address:byte in U1\n"
@@ -139,7 +139,7 @@ static void two_stages(void **state)
 	bench.timeline.cell_count = 3;
 	bench.table = (struct table){.timeline = &bench.timeline, .wiring = wiring_of(&bench.plan), .period = 3, .state_of_cell = states,
 	                             .pins = pins, .first_row = first_row, .line_of_type = line_of_type};
-	view_listing(&text, &bench.table, bench.images);
+	view_listing(&text, &bench.table, bench.images, 0);
 	assert_string_equal(text_string(&text),
 		"# bench: every row of the frame\n"
 		"# the line stage:\n"
@@ -164,7 +164,7 @@ static void two_stages(void **state)
 	bench.chips[0].address[0] = (struct address_wire){ADDRESS_KIND, 0};
 	bench.chips[0].address[1] = (struct address_wire){ADDRESS_KIND, 1};
 	bench.table.wiring = wiring_of(&bench.plan);
-	view_listing(&text, &bench.table, bench.images);
+	view_listing(&text, &bench.table, bench.images, 0);
 	assert_non_null(strstr(text_string(&text), "state, kind, word (step, clear, then the levels of sync), then"));
 	assert_non_null(strstr(text_string(&text), "\"only\" 0 1 \"all\" 1 0  1 1 0  0:10\n"));
 	assert_non_null(strstr(text_string(&text), "# row of the 4 states of all other kinds, which ends the line:\nspare 0 2  1 0 0  2:11\n"));
