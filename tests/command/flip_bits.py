@@ -121,12 +121,11 @@ class Machine:
         stages = []
         with open(os.path.join(self.folder, self.name + '.lst')) as listing:
             for row in listing:
-                if row.startswith('# the '):
-                    stages.append([])
-                found = re.search(r' ([0-9A-F]+):[0-9A-F]+', row)
-                if row[0] != '#' and found and int(found[1], 16) not in stages[-1]:
-                    stages[-1].append(int(found[1], 16))
-        return stages
+                if row.endswith(' stage:\n'):
+                    stages.append({})
+                elif row.startswith('"'):
+                    stages[-1][int(re.search(r'  ([0-9A-F]+):', row)[1], 16)] = True
+        return [list(rows) for rows in stages]
 
 
 def every_bit(name, used, named=False):
