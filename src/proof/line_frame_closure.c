@@ -14,20 +14,32 @@ static const char *number_words(const struct trial *trial, const struct countere
 	return arena_format(trial->proofs->arena, "the next %s is 0x%" PRIX32 " (%s), expected 0x%" PRIX32, name, number, bytes, expected);
 }
 
+// Step is asserted where it should not be, or the other way round.
+static struct counterexample step_fault(const struct trial *trial, uint32_t cell, bool steps)
+{
+	struct counterexample found = blame_step(trial, cell);
+	found.what = steps ? "step is asserted, expected only in the last cell of a line" : "step is not asserted in this last cell of the line";
+	return found;
+}
+
 // The frame stage steps where it should not, or the other way round; or it goes to another line.
 static struct counterexample frame_fault(const struct trial *trial, uint32_t cell, uint32_t state, uint32_t planned, bool line_ends)
 {
 	const bool steps = machine_steps(trial->machine, trial->lap.states[cell]);
 	const unsigned shift = trial->at.frame;
-	struct counterexample found;
-	if (steps != line_ends) {
-		found = blame_step(trial, cell);
-		found.what = steps ? "step is asserted, expected only in the last cell of a line" : "step is not asserted in this last cell of the line";
-		return found;
-	}
-	found = blame_next(trial, cell, (state ^ planned) >> shift << shift);
+	if (steps != line_ends)
+		return step_fault(trial, cell, steps);
+	struct counterexample found = blame_next(trial, cell, (state ^ planned) >> shift << shift);
 	found.what = number_words(trial, &found, "V", state >> shift, planned >> shift);
 	return found;
+}
+
+// The only line of a frame leads to itself, stepped or not; but latches of the frame stage that are never loaded hold
+// what they came up with.
+static bool never_loads(const struct trial *trial, uint32_t cell)
+{
+	return trial->timeline->line_count == 1 && trial->wiring.frame.outputs == OUTPUTS_REGISTERED &&
+	       !machine_steps(trial->machine, trial->lap.states[cell]);
 }
 
 static struct counterexample line_fault(const struct trial *trial, uint32_t cell, uint32_t state, uint32_t planned)
@@ -65,6 +77,8 @@ static struct counterexample find_departure(const struct trial *trial)
 				return frame_fault(trial, cell, state, trial->numbered[after], cell + 1 == end);
 			if (wrong != 0)
 				return line_fault(trial, cell, state, trial->numbered[after]);
+			if (cell + 1 == end && never_loads(trial, cell))
+				return step_fault(trial, cell, false);
 			if (cell + 1 == end && ((state ^ lap->states[0]) & line_mask) != 0)
 				return line_fault(trial, cell, state, lap->states[0]);
 		}

@@ -129,6 +129,27 @@ static void missing_step(void **test)
 	end(hand, proofs);
 }
 
+// A frame of one line, V 0, to which a counter always falls back: nothing but step loads the frame stage's latches.
+static void missing_step_of_the_only_line(void **test)
+{
+	(void)test;
+	struct by_hand *hand = pier(table_direct, async_latched);
+	hand->timeline.line_count = 1;
+	hand->timeline.cell_count = 3;
+	hand->timeline.tick_count = 30;
+	for (uint32_t v = 0; v < 4; v++)
+		burn_frame(hand, v, (struct pier_row){.kind = PICTURE, .clear = v > 0});
+	struct proofs *proofs = prove_pier(hand);
+	assert_false(proofs_failed(proofs, false));
+	proofs_destroy(proofs);
+	struct pier_row row = line_row(hand, PICTURE, 2);
+	row.step = false;
+	burn_line(hand, PICTURE, 2, row);
+	proofs = prove_pier(hand);
+	assert_fault(proofs, PROOF_CLOSURE, 2, STAGE_LINE, 2, 0xB0, "step is not asserted in this last cell of the line");
+	end(hand, proofs);
+}
+
 static void step_in_mid_line(void **test)
 {
 	(void)test;
@@ -486,6 +507,7 @@ int main(void)
 		cmocka_unit_test(bytes_by_hand),
 		cmocka_unit_test(every_combination_proves),
 		cmocka_unit_test(missing_step),
+		cmocka_unit_test(missing_step_of_the_only_line),
 		cmocka_unit_test(step_in_mid_line),
 		cmocka_unit_test(wrong_next_h),
 		cmocka_unit_test(wrong_next_v),
