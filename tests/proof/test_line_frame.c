@@ -415,6 +415,53 @@ static void rows_off_the_frame(void **test)
 	end(hand, proofs);
 }
 
+// Night in line 0 comes from the row of line 2, at the end of the lap.
+static void latch_loaded_by_the_last_line(void **test)
+{
+	(void)test;
+	for (unsigned wrong = 0; wrong < 2; wrong++) {
+		struct by_hand *hand = pier(table_latched, table_latched);
+		for (uint32_t cell = 0; cell < 3; cell++)
+			hand->timeline.asserted[cell] |= NIGHT;
+		struct pier_row row = frame_row(hand, 2);
+		row.asserted = wrong ? 0 : NIGHT;
+		burn_frame(hand, 2, row);
+		struct proofs *proofs = prove_pier(hand);
+		if (wrong)
+			assert_fault(proofs, PROOF_SIGNALS, 0, STAGE_FRAME, 2, 0xE8, "night is low, expected high");
+		else
+			assert_false(proofs_failed(proofs, false));
+		end(hand, proofs);
+	}
+}
+
+// Three lines of one cell each: each steps, the first too.
+static void lines_of_one_cell(void **test)
+{
+	(void)test;
+	for (unsigned direct = 0; direct < 2; direct++) {
+		struct by_hand *hand = pier(direct ? table_direct : table_latched, table_latched);
+		uint64_t asserted[3] = {SYNC | BLANK, SYNC | BLANK, SYNC | BLANK};
+		hand->types[PICTURE].cells = 1;
+		hand->types[PICTURE].ticks = 10;
+		hand->timeline.asserted = asserted;
+		hand->timeline.cell_count = 3;
+		hand->timeline.tick_count = 30;
+		for (uint32_t line = 0; line < 3; line++) {
+			hand->timeline.lines[line].type = PICTURE;
+			hand->timeline.lines[line].first_cell = line;
+			burn_frame(hand, line, (struct pier_row){.next = (line + 1) % 3, .kind = PICTURE});
+		}
+		for (uint32_t h = 0; h < 8; h++)
+			burn_line(hand, PICTURE, h, (struct pier_row){.next = 0, .step = true, .asserted = SYNC | BLANK});
+		struct proofs *proofs = prove_pier(hand);
+		assert_false(proofs_failed(proofs, false));
+		assert_int_equal(proofs->closure.start_state, direct ? 0 : 8); // the step latch
+		assert_int_equal(proofs->closure.ticks, 30);
+		end(hand, proofs);
+	}
+}
+
 // ---- a line stage whose states are no numbers
 
 // Holds H in every cell of the frame to state[cell of the line], in a field of its own, and burns the rows to suit.
@@ -519,6 +566,8 @@ int main(void)
 		cmocka_unit_test(pins_of_the_line_stage),
 		cmocka_unit_test(pins_of_the_frame_stage),
 		cmocka_unit_test(rows_off_the_frame),
+		cmocka_unit_test(latch_loaded_by_the_last_line),
+		cmocka_unit_test(lines_of_one_cell),
 		cmocka_unit_test(start_is_found),
 		cmocka_unit_test(jump_in_a_line),
 		cmocka_unit_test(state_comes_again),
