@@ -12,12 +12,14 @@
 #include "view/figures.h"
 
 static const char help[] =
-	"Usage: scanlatch build [options] PLAN... -o DIR\n"
+	"Usage: scanlatch build [options] PLAN|SET... -o DIR\n"
 	"\n"
 	"Lays out each plan, chooses states, fills the tables and proves the images as they will be on disk.\n"
 	"Then writes NAME.LABEL.bin and NAME.LABEL.hex for each chip and NAME.manifest.json into DIR, which is\n"
-	"made if it is not there. If a must fails, or a plan is bad, nothing is written for any of them.\n"
-	"PLAN may be - for standard input.\n"
+	"made if it is not there. NAME is the plan's; of a set, whose plans share the chips, it is the set's,\n"
+	"and each bank is proved against its plan. If a must fails, or a plan is bad, nothing is written for any\n"
+	"of them. PLAN or SET may be - for standard input; the plans of such a set are looked for in the current\n"
+	"folder.\n"
 	"\n"
 	"Options:\n"
 	"  -o, --output DIR   where the images go\n"

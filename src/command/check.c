@@ -5,11 +5,12 @@
 #include "command/command.h"
 
 static const char help[] =
-	"Usage: scanlatch check [options] PLAN...\n"
+	"Usage: scanlatch check [options] PLAN|SET...\n"
 	"\n"
 	"Reads plans, lays out their lines and reports the tick divider, lengths, positions, roundings,\n"
-	"wiring, colour and speed. A plan for whose cells no states can be found is an error here too. Writes\n"
-	"no images. PLAN may be - for standard input.\n"
+	"wiring, colour and speed. A plan for whose cells no states can be found is an error here too. Of a\n"
+	"set, all plans are read, and whether they agree on their chips. Writes no images. PLAN or SET may be -\n"
+	"for standard input; the plans of such a set are looked for in the current folder.\n"
 	"\n"
 	"Options:\n"
 	"      --json         one JSON document instead of text (a list of them for several plans)\n"

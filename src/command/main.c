@@ -6,9 +6,9 @@
 #include "command/command.h"
 
 const struct command commands[] = {
-	{"check", "read plans, lay out their lines and report, without images", command_check},
-	{"build", "make the images of plans, prove them and write them", command_build},
-	{"prove", "prove images that are there against their plan", command_prove},
+	{"check", "read plans or sets, lay out their lines and report, without images", command_check},
+	{"build", "make the images of plans or sets, prove them and write them", command_build},
+	{"prove", "prove images that are there against their plan or set", command_prove},
 	{"list", "print a catalogue: parts", command_list},
 };
 const size_t command_count = sizeof commands / sizeof *commands;

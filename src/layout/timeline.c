@@ -126,9 +126,19 @@ static void put_led(const struct timeline *timeline, uint64_t *pins, int64_t lea
 		pins[cell] |= timeline->asserted[cell - first] & mask;
 }
 
-uint64_t *timeline_pins(const struct timeline *timeline, struct arena *arena)
+static bool has_leads(const struct plan *plan)
+{
+	for (size_t signal = 0; signal < plan->signal_count; signal++)
+		if (plan->signals[signal].lead_cells != 0)
+			return true;
+	return false;
+}
+
+const uint64_t *timeline_pins(const struct timeline *timeline, struct arena *arena)
 {
 	const struct plan *plan = timeline->plan;
+	if (!has_leads(plan))
+		return timeline->asserted;
 	uint64_t *pins = arena_array(arena, timeline->cell_count, sizeof *pins);
 	uint64_t done = 0;
 	if (pins == NULL)

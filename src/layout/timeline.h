@@ -53,8 +53,8 @@ struct timeline *timeline_create(const struct plan *plan, struct diagnostics *di
 void timeline_destroy(struct timeline *timeline);
 
 // What the pins must show at each cell: bit s is set if signal s is asserted at its pin, that is, asserted in the timeline
-// `lead` cells later. [cell_count] in the arena; NULL when memory is out.
-uint64_t *timeline_pins(const struct timeline *timeline, struct arena *arena);
+// `lead` cells later. [cell_count] in the arena, or the timeline's own if no signal has a lead; NULL when memory is out.
+const uint64_t *timeline_pins(const struct timeline *timeline, struct arena *arena);
 
 // The signals whose pins, as timeline_pins gives them, keep their level over each line of the frame. Linear time. Cannot fail.
 uint64_t timeline_line_signals(const struct timeline *timeline, const uint64_t *pins);

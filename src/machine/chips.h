@@ -29,6 +29,7 @@ struct two_stages;
 
 struct machine {
 	struct wiring wiring;
+	struct feedback at;                         // where the parts of a state lie
 	uint32_t state_mask;                        // of the line stage
 	struct chip_reader *readers;                // [wiring.chip_count]
 	struct two_stages *two;                     // FORM_LINE_FRAME only

@@ -12,6 +12,7 @@ struct machine *machine_create(struct arena *arena, const struct wiring *wiring,
 	if (machine->readers == NULL)
 		return NULL;
 	machine->wiring = *wiring;
+	machine->at = feedback_of(wiring);
 	machine->state_mask = ((uint32_t)1 << wiring->line.state_bits) - 1;
 	for (size_t chip = 0; chip < wiring->chip_count; chip++)
 		chip_reader_init(&machine->readers[chip], wiring, chip, &images[chip], bank);
@@ -109,9 +110,8 @@ uint32_t machine_row_address(const struct machine *machine, enum stage stage, ui
 {
 	if (machine->two == NULL)
 		return state;
-	const struct feedback feedback = feedback_of(&machine->wiring);
 	if (stage == STAGE_FRAME)
-		return state >> feedback.frame;
+		return state >> machine->at.frame;
 	return (state & machine->state_mask) | two_stages_kind(machine->two, state) << machine->wiring.line.state_bits;
 }
 

@@ -43,7 +43,7 @@ struct two_stages *two_stages_create(struct arena *arena, const struct machine *
 	struct two_stages *two = arena_alloc(arena, sizeof *two);
 	if (two == NULL)
 		return NULL;
-	two->at = feedback_of(&machine->wiring);
+	two->at = machine->at;
 	two->line_bits = machine->wiring.line.state_bits;
 	two->kind_mask = ((uint32_t)1 << two->at.kind_bits) - 1;
 	two->kinds = arena_array(arena, (size_t)1 << machine->wiring.frame.address_bits, sizeof *two->kinds);

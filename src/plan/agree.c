@@ -92,8 +92,8 @@ static bool same_machine(const struct comparison *compared)
 			return false;
 	if (same_count(compared, second->place, first->place, "kind", "bit", second->kind_bits, first->kind_bits))
 		return true;
-	diagnose_hint(compared->diagnostics, "write kind: %u bits in both machines",
-	              first->kind_bits > second->kind_bits ? first->kind_bits : second->kind_bits);
+	const unsigned most = first->kind_bits > second->kind_bits ? first->kind_bits : second->kind_bits;
+	diagnose_hint(compared->diagnostics, "write kind: %u bit%s in both machines", most, most == 1 ? "" : "s");
 	return false;
 }
 

@@ -15,6 +15,7 @@ static void note_longest(struct trial *trial, struct power_up_result *result)
 	result->longest_cells = trial->ways->longest_cells;
 	result->longest_state = trial->ways->longest_state;
 	result->longest_bank = trial->bank;
+	result->longest_ticks = way_ticks(trial, result->longest_state, result->longest_cells);
 	// A frame has more cells than lines, so that both products keep below 2^48.
 	fraction_make((int64_t)result->longest_cells * timeline->line_count, timeline->cell_count, &result->longest_lines);
 }

@@ -81,6 +81,7 @@ struct power_up_result {
 	uint64_t cleared_states;   // with async clear, over all banks: fall to 0 at once and are never a cell
 	uint32_t longest_cells;    // the longest way to a state of the frame
 	struct fraction longest_lines; // cells / mean cells of a line
+	int64_t longest_ticks;     // see way_time.c
 	uint32_t longest_state;
 	uint32_t longest_bank;
 	uint64_t lost_states;      // states that never reach the frame

@@ -78,6 +78,9 @@ bool prove_glitches(struct trial *trial);
 bool prove_speed(struct trial *trial);
 bool prove_sweep(struct trial *trial);
 
+// The ticks that a way of so many cells takes from a state on. Cannot fail.
+int64_t way_ticks(const struct trial *trial, uint32_t state, uint32_t cells);
+
 // What glitches has to say of direct outputs and asynchronous clears. Cannot fail.
 void measure_unsettled(struct trial *trial);
 

@@ -28,12 +28,8 @@ static void tally_lost(struct tally *tally, uint32_t cell, unsigned bit)
 	tally->lost_bit = bit;
 }
 
-static void tally_regained(struct tally *tally, uint32_t cell, unsigned bit, uint32_t cells, uint32_t slip)
+static void note_worst(struct upset_result *worst, uint32_t cell, unsigned bit, uint32_t cells, uint32_t slip)
 {
-	struct upset_result *worst = tally->result;
-	tally->sums->regained++;
-	tally->sums->cells += cells;
-	tally->sums->slip_cells += slip;
 	if (cells > worst->worst_cells ||
 	    (cells == worst->worst_cells && comes_before(cell, bit, worst->worst_cell, worst->worst_bit))) {
 		worst->worst_cells = cells;
@@ -60,16 +56,26 @@ static uint32_t slip_of(uint32_t entry, uint32_t cell, uint32_t cells, uint32_t 
 	return ahead <= period - ahead ? ahead : period - ahead;
 }
 
+// The sums are kept at hand, since this is done a billion times.
 static void upset_state(const struct trial *trial, struct tally *tally, uint32_t state, uint32_t cell)
 {
 	const uint32_t period = trial->lap.return_cells;
+	struct upset_sums sums = {0};
 	for (unsigned bit = 0; bit < trial->at.bits; bit++) {
 		struct way way = ways_of(trial->ways, state ^ (uint32_t)1 << bit);
-		if (way.lost)
+		if (way.lost) {
 			tally_lost(tally, cell, bit);
-		else
-			tally_regained(tally, cell, bit, way.cells, slip_of(way.entry, cell, way.cells, period));
+			continue;
+		}
+		const uint32_t slip = slip_of(way.entry, cell, way.cells, period);
+		note_worst(tally->result, cell, bit, way.cells, slip);
+		sums.regained++;
+		sums.cells += way.cells;
+		sums.slip_cells += slip;
 	}
+	tally->sums->regained += sums.regained;
+	tally->sums->cells += sums.cells;
+	tally->sums->slip_cells += sums.slip_cells;
 	tally->result->upsets += trial->at.bits;
 }
 

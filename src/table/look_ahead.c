@@ -42,15 +42,27 @@ static bool asserted_at(const struct timeline *timeline, uint32_t cell, size_t s
 	return (timeline->asserted[cell] >> signal & 1) != 0;
 }
 
+// True if with `ahead` two lines of a type have the same levels of a signal for each of their cells.
+static bool lines_agree(const struct timeline *timeline, uint32_t left, uint32_t right, size_t signal, int64_t ahead)
+{
+	const uint32_t cells = timeline->types[timeline->lines[left].type].cells, count = timeline->cell_count;
+	uint32_t left_at = cell_ahead(timeline, left, 0, ahead), right_at = cell_ahead(timeline, right, 0, ahead);
+	for (uint32_t cell = 0; cell < cells; cell++) {
+		if (asserted_at(timeline, left_at, signal) != asserted_at(timeline, right_at, signal))
+			return false;
+		left_at = left_at + 1 == count ? 0 : left_at + 1;
+		right_at = right_at + 1 == count ? 0 : right_at + 1;
+	}
+	return true;
+}
+
 // True if with `ahead` all lines of a type have the same levels of a signal for each of their cells.
 static bool would_agree(const struct timeline *timeline, uint32_t first, size_t signal, int64_t ahead)
 {
 	const uint32_t type = timeline->lines[first].type;
 	for (uint32_t line = first + 1; line < timeline->line_count; line++)
-		for (uint32_t cell = 0; timeline->lines[line].type == type && cell < timeline->types[type].cells; cell++)
-			if (asserted_at(timeline, cell_ahead(timeline, line, cell, ahead), signal) !=
-			    asserted_at(timeline, cell_ahead(timeline, first, cell, ahead), signal))
-				return false;
+		if (timeline->lines[line].type == type && !lines_agree(timeline, first, line, signal, ahead))
+			return false;
 	return true;
 }
 

@@ -15,7 +15,7 @@ struct table {
 	uint32_t *state_of_cell;        // [period]: states of the line stage, without the kind
 	const uint32_t **codes;         // [signal_count]: for a FROM_FIELD signal its codes, ascending (chosen ones for codes: auto); else NULL
 	size_t *code_counts;            // [signal_count]
-	uint64_t *pins;                 // [cell_count]: timeline_pins
+	const uint64_t *pins;           // [cell_count]: timeline_pins
 	struct row spare[STAGE_COUNT];  // the row of every state that is not on the frame; see table_spare
 	// FORM_LINE_FRAME only, else NULL. Rows of the line stage are those of each line type's cells, in the order of `lines`.
 	uint32_t *first_row;            // [plan->line_count + 1]: where a type's rows begin; one that the frame does not use has none

@@ -48,7 +48,7 @@ void view_must(struct text *out, const char *name, bool kept, const char *words,
 //                 cycles_per_frame, "repeats_lines", "repeats_frames" (fractions and repeats left out if they do not fit 64
 //                 bits), "asked": "free", "every line", "every 2 frames", … }
 //   "power-up": { "states" (in all banks), "frame_states" (in one), "cleared_states" (in all banks: fall to 0 at once, by an
-//                 async clear), "longest_cells", fraction longest_lines, "longest_state",
+//                 async clear), "longest_cells", fraction longest_lines, "longest_ticks": TICKS, time longest (_s, _us; left out if it does not fit), "longest_state",
 //                 "longest_bank", "lost_states", and if some are lost "second_loop": { "state", "cells" } }
 //   "upset":    { "upsets", "worst_cells", "worst": { PLACE, "bit" }, fraction mean_cells, "worst_slip_cells", fraction
 //                 worst_slip_lines, "worst_slip": { PLACE, "bit" }, fraction mean_slip_cells }

@@ -144,10 +144,15 @@ static void put_colour(struct text *out, const struct proofs *proofs)
 static void put_longest_way(struct text *out, const struct proofs *proofs)
 {
 	const struct power_up_result *power_up = &proofs->power_up;
+	struct fraction seconds;
 	text_put(out, ", the longest way ");
 	text_put_count(out, power_up->longest_cells, "cell", "cells");
 	text_put(out, " (");
 	put_lines(out, power_up->longest_lines);
+	if (seconds_of_ticks(&plan_of(proofs)->clock, power_up->longest_ticks, &seconds)) {
+		text_put(out, ", ");
+		text_put_time_in(out, seconds, UNIT_MICROSECONDS);
+	}
 	text_put(out, ") from ");
 	put_state(out, proofs, power_up->longest_state);
 	put_bank(out, proofs, power_up->longest_bank);

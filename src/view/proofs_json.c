@@ -115,11 +115,15 @@ static void put_colour(json_t **object, const struct proofs *proofs)
 static void put_power_up(json_t **object, const struct proofs *proofs)
 {
 	const struct power_up_result *power_up = &proofs->power_up;
+	struct fraction seconds;
 	json_put(object, "states", count(power_up->states));
 	json_put(object, "frame_states", count(power_up->frame_states));
 	json_put(object, "cleared_states", count(power_up->cleared_states));
 	json_put(object, "longest_cells", count(power_up->longest_cells));
 	json_put_fraction(object, "longest_lines", power_up->longest_lines);
+	json_put(object, "longest_ticks", json_fraction(fraction_whole(power_up->longest_ticks)));
+	if (seconds_of_ticks(&plan_of(proofs)->clock, power_up->longest_ticks, &seconds))
+		json_put_time(object, "longest", seconds, UNIT_MICROSECONDS);
 	json_put(object, "longest_state", state_json(proofs, power_up->longest_state));
 	json_put(object, "longest_bank", count(power_up->longest_bank));
 	json_put(object, "lost_states", count(power_up->lost_states));

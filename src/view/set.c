@@ -32,11 +32,18 @@ void view_banks(struct text *out, const struct plan *plan, const uint32_t *banks
 	text_printf(out, ": %s (%s)\n", plan->name, plan->file_name);
 }
 
+static const char *jumpers_words(const struct set_view *view)
+{
+	for (size_t member = 0; member < view->count; member++)
+		if (reason_of(view->proofs[member], PROOF_POWER_UP) != NULL)
+			return "not judged: some bank's frame does not close";
+	return set_comes_home(view) ? "may change at any moment: every state of every bank comes home, as power-up shows"
+	                            : "may not change while the machine runs: some state of some bank never comes home, as power-up shows";
+}
+
 static void put_jumpers(struct text *out, const struct set_view *view, bool colour)
 {
-	const bool home = set_comes_home(view);
-	view_must(out, "jumpers", home, home ? "may change at any moment: every state of every bank comes home, as power-up shows"
-	                                     : "may not change while the machine runs: some state of some bank never comes home, as power-up shows", colour);
+	view_must(out, "jumpers", set_comes_home(view), jumpers_words(view), colour);
 }
 
 void view_set_proofs(struct text *out, const struct set_view *view, bool colour)

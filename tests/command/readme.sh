@@ -58,6 +58,20 @@ holds "prove shows what the README shows" compare 3
 
 holds "the README makes mistakes" eval "$(shell_block 4)"
 holds "mistakes look as the README shows" compare 4
-same "the README shows four commands" "$(block 5)" ""
+
+holds "two stages look as the README shows" compare 5
+holds "a set looks as the README shows" compare 6
+same "the README shows six commands" "$(block 7)" ""
+
+# A block of YAML that is a plan's or a set's own text: each of its lines stands there, but for what a comment says.
+yaml_block() { awk -v wanted="$1" '/^```/ { if (inside) inside = 0; else if ($0 == "```yaml") inside = ++count == wanted; next } inside' "$readme"; }
+stands_in() { # block, plan
+	yaml_block "$1" | sed 's/ *#.*//' | tr -s ' ' | sed '/^ *$/d' >shown
+	sed 's/ *#.*//' "$2" | tr -s ' ' >whole
+	[ -s shown ] && ! grep -vxFf whole shown
+}
+holds "the README quotes the tide board" stands_in 1 plans/tide-board-60.yaml
+holds "the README quotes the mooring board" stands_in 2 plans/mooring-board.yaml
+holds "the README quotes the pilot station" stands_in 3 plans/pilot-station.yaml
 
 finish

@@ -41,6 +41,36 @@ static void the_longest_way(void **test)
 	by_hand_destroy(hand);
 }
 
+// 4 → 5 → 6 → 0, cells of 10 ticks, 15 where stretched; rows 4 and 6 assert the stretch.
+static void assert_way_ticks(enum outputs outputs, int64_t lead_cells, int64_t ticks)
+{
+	struct by_hand *hand = by_hand_create(3);
+	const uint64_t stretch = add_stretch(hand, 5);
+	const size_t line = add_line(hand, "even", 2, (uint64_t[]){0, 0});
+	hand->signals[0].lead_cells = lead_cells;
+	hand->plan.machine.line.outputs = outputs;
+	set_frame(hand, 1, &line);
+	add_straight_chips(hand);
+	const uint32_t next[] = {1, 0, 0, 0, 5, 6, 0, 0};
+	for (uint32_t state = 0; state < 8; state++)
+		burn(hand, state, next[state], state == 4 || state == 6 ? stretch : 0);
+	struct proofs *proofs = prove(hand, 0);
+	assert_int_equal(proofs->power_up.longest_cells, 3);
+	assert_int_equal(proofs->power_up.longest_state, 4);
+	assert_int_equal(proofs->power_up.longest_ticks, ticks);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+}
+
+static void the_longest_way_in_ticks(void **test)
+{
+	(void)test;
+	assert_way_ticks(OUTPUTS_DIRECT, 0, 15 + 10 + 15);
+	assert_way_ticks(OUTPUTS_REGISTERED, 0, 10 + 15 + 10); // what the pin shows in 4 nobody knows; in 5 it is what row 4 has
+	assert_way_ticks(OUTPUTS_REGISTERED, 1, 10 + 10 + 15); // the pin of 5 lengthens 6
+	assert_way_ticks(OUTPUTS_REGISTERED, -1, 15 + 10 + 15); // the pins of 5, 6 and 0 lengthen 4, 5 and 6
+}
+
 // 5 → 6 → 7 → 6: three states are lost, two of them are the loop.
 static void a_second_loop(void **test)
 {
@@ -398,6 +428,7 @@ int main(void)
 	const struct CMUnitTest tests[] = {
 		cmocka_unit_test(all_spares_lead_home),
 		cmocka_unit_test(the_longest_way),
+		cmocka_unit_test(the_longest_way_in_ticks),
 		cmocka_unit_test(a_second_loop),
 		cmocka_unit_test(loops_of_one_state),
 		cmocka_unit_test(the_chip_with_the_wrong_bits),

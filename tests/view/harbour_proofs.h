@@ -91,7 +91,7 @@ static inline void harbour_figures(struct proofs *proofs)
 	proofs->signals = (struct signals_result){132310, 17280};
 	proofs->colour = (struct colour_result){true, {228, 1}, {59736, 1}, true, 1, 1};
 	proofs->power_up = (struct power_up_result){.states = 65536, .frame_states = 26462, .longest_cells = 1,
-	                                            .longest_lines = {1, 101}};
+	                                            .longest_lines = {1, 101}, .longest_ticks = 9};
 	proofs->upset = (struct upset_result){.upsets = 423392, .worst_cells = 101, .worst_cell = 300, .worst_bit = 14,
 	                                      .mean_cells = {51, 50}, .worst_slip_cells = 50, .worst_slip_lines = {50, 101},
 	                                      .mean_slip_cells = {1, 3}, .worst_slip_cell = 107, .worst_slip_bit = 3};

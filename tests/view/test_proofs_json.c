@@ -67,7 +67,8 @@ static void the_figures_of_a_good_plan(void **state)
 		"'asked':'every line'}");
 	assert_proof(&harbour, PROOF_POWER_UP,
 		"{'verdict':'pass','must':true,'states':65536,'frame_states':26462,'cleared_states':0,'longest_cells':1,"
-		"'longest_lines':'1/101','longest_lines_rounded':0.009901,'longest_state':0,'longest_bank':0,'lost_states':0}");
+		"'longest_lines':'1/101','longest_lines_rounded':0.009901,'longest_ticks':'9',"
+		"'longest_s':'11/17500000','longest_us':0.628571,'longest_state':0,'longest_bank':0,'lost_states':0}");
 	assert_proof(&harbour, PROOF_UPSET,
 		"{'verdict':'pass','must':false,'upsets':423392,'worst_cells':101,'worst':{'line':2,'line_type':'border',"
 		"'cell':98,'region':'picture','frame_cell':300,'bit':14},'mean_cells':'51/50','mean_cells_rounded':1.02,"
@@ -147,7 +148,8 @@ static void a_second_loop_has_no_place_in_the_frame(void **state)
 		.byte_known = true, .byte = {CHIP_ROM0, 18, 52}, .what = "17 states are lost"});
 	assert_proof(&harbour, PROOF_POWER_UP,
 		"{'verdict':'fail','must':true,'states':65536,'frame_states':26462,'cleared_states':0,'longest_cells':1,"
-		"'longest_lines':'1/101','longest_lines_rounded':0.009901,'longest_state':0,'longest_bank':0,'lost_states':17,"
+		"'longest_lines':'1/101','longest_lines_rounded':0.009901,'longest_ticks':'9',"
+		"'longest_s':'11/17500000','longest_us':0.628571,'longest_state':0,'longest_bank':0,'lost_states':17,"
 		"'second_loop':{'state':18,'cells':3},'counterexample':{'what':'17 states are lost','bank':0,'state':18,"
 		"'chip':'rom0','address':18,'byte':52}}");
 }

@@ -38,7 +38,8 @@ static void a_good_plan_has_a_line_for_each_proof(void **state)
 		"pass  signals   132310 pin levels and 17280 held addresses as planned\n"
 		"      load is asserted in codes of field top: 1 4 5\n"
 		"pass  colour    228 cycles a line; the phase repeats every line and every frame; asked: every line\n"
-		"pass  power-up  all 65536 states come home, the longest way 1 cell (1/101 line) from state 0x0000\n"
+		"pass  power-up  all 65536 states come home, the longest way 1 cell (1/101 line, 0.629 us) from state\n"
+		"                0x0000\n"
 		"pass  upset     423392 flips of one bit: home after 101 cells at worst (bit 14 in line 2, cell 98),\n"
 		"                1.02 in the mean; the raster slips 50 cells (0.495 lines) at worst (bit 3 in line 1,\n"
 		"                cell 6), 0.333 in the mean\n"
@@ -143,8 +144,8 @@ static void several_banks_are_named(void **state)
 		"pass  signals   132310 pin levels and 17280 held addresses as planned in 4 banks\n"
 		"      load is asserted in codes of field top: 1 4 5\n");
 	assert_proof(&harbour, PROOF_POWER_UP,
-		"pass  power-up  all 65536 states in 4 banks come home, the longest way 1 cell (1/101 line) from\n"
-		"                state 0x0000 in bank 3\n");
+		"pass  power-up  all 65536 states in 4 banks come home, the longest way 1 cell (1/101 line, 0.629 us)\n"
+		"                from state 0x0000 in bank 3\n");
 	struct counterexample found = harbour_wrong_sync();
 	found.bank = 2;
 	harbour_fails(&harbour, PROOF_SIGNALS, found);
@@ -287,16 +288,18 @@ static void long_ways_home_count_lines(void **state)
 	power_up->longest_lines = (struct fraction){2617, 101};
 	power_up->longest_state = 0xFFFF;
 	assert_proof(&harbour, PROOF_POWER_UP,
-		"pass  power-up  all 65536 states come home, the longest way 2617 cells (25.911 lines) from state\n"
-		"                0xFFFF\n");
+		"pass  power-up  all 65536 states come home, the longest way 2617 cells (25.911 lines, 0.629 us) from\n"
+		"                state 0xFFFF\n");
 	power_up->longest_cells = 303;
 	power_up->longest_lines = (struct fraction){3, 1};
 	assert_proof(&harbour, PROOF_POWER_UP,
-		"pass  power-up  all 65536 states come home, the longest way 303 cells (3 lines) from state 0xFFFF\n");
+		"pass  power-up  all 65536 states come home, the longest way 303 cells (3 lines, 0.629 us) from state\n"
+		"                0xFFFF\n");
 	power_up->longest_cells = 101;
 	power_up->longest_lines = (struct fraction){1, 1};
 	assert_proof(&harbour, PROOF_POWER_UP,
-		"pass  power-up  all 65536 states come home, the longest way 101 cells (1 line) from state 0xFFFF\n");
+		"pass  power-up  all 65536 states come home, the longest way 101 cells (1 line, 0.629 us) from state\n"
+		"                0xFFFF\n");
 }
 
 static void cleared_states_are_not_of_the_frame(void **state)
