@@ -273,6 +273,33 @@ static void wrong_kind(void **test)
 	}
 }
 
+// A line of the wrong kind that shows only in the latched pins after it: in the frame's first cell, once it has begun again. (No plan asks
+// for these pins; blank is off in cell 8, and in cell 0 after a quiet line.)
+static void wrong_kind_shown_in_the_first_cell(void **test)
+{
+	(void)test;
+	struct by_hand *hand = pier(async_latched, async_latched);
+	hand->timeline.asserted[0] = SYNC;
+	hand->timeline.asserted[8] = NIGHT;
+	struct pier_row row = line_row(hand, QUIET, 1);
+	row.asserted = 0;
+	burn_line(hand, QUIET, 1, row);
+	row = line_row(hand, QUIET, 2);
+	row.asserted = SYNC;
+	burn_line(hand, QUIET, 2, row);
+	struct proofs *proofs = prove_pier(hand);
+	assert_false(proofs_failed(proofs, false));
+	proofs_destroy(proofs);
+	row = frame_row(hand, 1);
+	row.kind = 0;
+	burn_frame(hand, 1, row);
+	proofs = prove_pier(hand);
+	assert_fault(proofs, PROOF_CLOSURE, 6, STAGE_FRAME, 1, 0xF3, "this line is of kind 0, expected 1 (quiet)");
+	assert_follows(proofs, PROOF_SIGNALS, "blank is high, expected low; this may follow from the earlier fault under closure");
+	assert_int_equal(proofs->proof[PROOF_SIGNALS].counterexample.cell, 0);
+	end(hand, proofs);
+}
+
 // A kind that comes to the same is none to find fault with.
 static void other_kind_of_the_same_raster(void **test)
 {
@@ -398,6 +425,37 @@ static void pins_of_the_frame_stage(void **test)
 	assert_pin(async_latched, sync_latched, STAGE_FRAME, 0, 4, 3, "night is high, expected low");
 	assert_pin(sync_direct, async_latched, STAGE_FRAME, 2, 4, 0, "night is high, expected low");
 	assert_pin(sync_direct, async_direct, STAGE_FRAME, 0, 4, 0, "night is high, expected low");
+}
+
+// In mid line a latch of the frame stage shows what it was loaded with at the line's beginning.
+static void latch_in_mid_line(void **test)
+{
+	(void)test;
+	struct by_hand *hand = pier(table_latched, table_latched);
+	hand->timeline.asserted[4] |= NIGHT;
+	struct proofs *proofs = prove_pier(hand);
+	assert_fault(proofs, PROOF_SIGNALS, 4, STAGE_FRAME, 0, 0xE9, "night is low, expected high");
+	end(hand, proofs);
+}
+
+// Where the step is missing that should load a latch, no row of the frame stage is at fault.
+static void latch_that_is_not_loaded(void **test)
+{
+	(void)test;
+	struct by_hand *hand = pier(table_direct, table_latched);
+	for (uint32_t cell = 3; cell < 6; cell++)
+		hand->timeline.asserted[cell] |= NIGHT;
+	struct pier_row row = frame_row(hand, 0);
+	row.asserted = NIGHT;
+	burn_frame(hand, 0, row);
+	row = line_row(hand, PICTURE, 2);
+	row.step = false;
+	burn_line(hand, PICTURE, 2, row);
+	struct proofs *proofs = prove_pier(hand);
+	assert_fault(proofs, PROOF_CLOSURE, 2, STAGE_LINE, 2, 0xB0, "step is not asserted in this last cell of the line");
+	assert_follows(proofs, PROOF_SIGNALS, "night is low, expected high; this may follow from the earlier fault under closure");
+	assert_int_equal(proofs->proof[PROOF_SIGNALS].counterexample.cell, 3);
+	end(hand, proofs);
 }
 
 // Spare rows, what is passed through and the bits that are not wired may hold any signals.
@@ -531,6 +589,30 @@ static void state_comes_again(void **test)
 	end(hand, proofs);
 }
 
+// Codes that are read out of the images are those of the cells before the machine went astray: in the second cell of each line H is 1, and
+// gate is asserted. The way from H 0 to 1 leads to 2 instead; in what follows, H 0 comes where gate should be.
+static void codes_before_a_jump(void **test)
+{
+	(void)test;
+	struct by_hand *hand = pier(table_direct, table_direct);
+	const uint64_t gate = add_decoded(hand, "gate", add_field(hand, "code", 1, 0), NULL, 0);
+	for (uint32_t cell = 1; cell < 8; cell += 3)
+		hand->timeline.asserted[cell] |= gate;
+	struct proofs *proofs = prove_pier(hand);
+	assert_false(proofs_failed(proofs, false));
+	assert_int_equal(proofs->code_counts[3], 1);
+	assert_int_equal(proofs->codes[3][0], 1);
+	proofs_destroy(proofs);
+	struct pier_row row = line_row(hand, PICTURE, 0);
+	row.next = 2;
+	burn_line(hand, PICTURE, 0, row);
+	proofs = prove_pier(hand);
+	assert_fault(proofs, PROOF_CLOSURE, 0, STAGE_LINE, 0, 0xD2, "the next H is 0x2, expected 0x1, which nothing else leads to");
+	assert_int_equal(proofs->proof[PROOF_SIGNALS].counterexample.cell, 1);
+	assert_false(proofs->proof[PROOF_SIGNALS].counterexample.byte_known);
+	end(hand, proofs);
+}
+
 // A held bit that is wrong is the fault of the row that leads there.
 static void wrong_held_bit(void **test)
 {
@@ -559,18 +641,22 @@ int main(void)
 		cmocka_unit_test(wrong_next_h),
 		cmocka_unit_test(wrong_next_v),
 		cmocka_unit_test(wrong_kind),
+		cmocka_unit_test(wrong_kind_shown_in_the_first_cell),
 		cmocka_unit_test(other_kind_of_the_same_raster),
 		cmocka_unit_test(wrong_clear_of_the_line_stage),
 		cmocka_unit_test(wrong_clear_of_the_frame_stage),
 		cmocka_unit_test(lines_of_another_number),
 		cmocka_unit_test(pins_of_the_line_stage),
 		cmocka_unit_test(pins_of_the_frame_stage),
+		cmocka_unit_test(latch_in_mid_line),
+		cmocka_unit_test(latch_that_is_not_loaded),
 		cmocka_unit_test(rows_off_the_frame),
 		cmocka_unit_test(latch_loaded_by_the_last_line),
 		cmocka_unit_test(lines_of_one_cell),
 		cmocka_unit_test(start_is_found),
 		cmocka_unit_test(jump_in_a_line),
 		cmocka_unit_test(state_comes_again),
+		cmocka_unit_test(codes_before_a_jump),
 		cmocka_unit_test(wrong_held_bit),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);

@@ -240,6 +240,7 @@ static void passing_frame_state(void **test)
 	assert_int_equal(frame->passing_address, 3);
 	assert_int_equal(frame->passing_pins, 0);
 	assert_false(proofs->glitches.stages[STAGE_LINE].async_clear);
+	assert_false(proofs->glitches.stages[STAGE_LINE].passes);
 	proofs_destroy(proofs);
 	struct pier_row row = frame_row(hand, 0);
 	row.asserted = NIGHT;

@@ -77,6 +77,9 @@ static void cleared_states(void **test)
 	assert_int_equal(proofs->power_up.frame_states, 9);
 	assert_int_equal(proofs->power_up.cleared_states, 3 * 5 + 8);
 	assert_int_equal(proofs->power_up.longest_cells, 0);
+	// What falls to a state of the frame is none of it.
+	assert_int_equal(proofs->upset.upsets, 9 * 5);
+	assert_ratio(proofs->upset.mean_cells, 0, 1);
 	end(hand, proofs);
 }
 
