@@ -9,6 +9,7 @@ struct comparison {
 	struct diagnostics *diagnostics;
 	uint64_t *reported;      // [line types]: signals that need no second report
 	unsigned reports;
+	uint64_t steady;         // signals that never change within a line
 	bool fields_agree;
 };
 
@@ -84,6 +85,11 @@ static void hint_remedies(const struct comparison *comparison, const struct diff
 	const bool registered = is_registered(comparison);
 	const int64_t other = difference->ahead + (registered ? -1 : 1);
 	const char *outputs = registered ? "direct" : "registered";
+	if (is_data && (comparison->steady >> difference->signal & 1) != 0) {
+		diagnose_hint(comparison->diagnostics, "\"%s\" never changes within a line: give it stage: frame",
+		              timeline->plan->signals[difference->signal].name);
+		return;
+	}
 	const bool helps = is_data && would_agree(timeline, difference->left, difference->signal, other);
 	const char *alike = difference->ahead > 0 ? "what follows them begins" : "what comes before them ends";
 	if (helps)
@@ -214,6 +220,7 @@ bool look_ahead_check(const struct table *table, struct arena *scratch, struct d
 	const struct timeline *timeline = table->timeline;
 	const uint64_t decoded = field_signals(timeline->plan);
 	struct comparison comparison = {.table = table, .diagnostics = diagnostics, .fields_agree = true};
+	comparison.steady = timeline_line_signals(timeline, timeline->asserted);
 	comparison.reported = arena_array(scratch, timeline->plan->line_count, sizeof *comparison.reported);
 	if (comparison.reported == NULL) {
 		diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){timeline->plan->source, 0, 0}, "memory is out");
