@@ -68,7 +68,8 @@ static void power(struct board *board)
 	assert_non_null(board->machine);
 }
 
-static void build(struct board *board, struct stage_kind line, struct stage_kind frame, const uint8_t *line_bytes, const uint8_t *frame_bytes)
+static void build(struct board *board, struct stage_kind line, struct stage_kind frame, const uint8_t *line_bytes,
+                  const uint8_t *frame_bytes)
 {
 	*board = (struct board){.arena = arena_create()};
 	assert_non_null(board->arena);

@@ -52,7 +52,8 @@ static inline void burn_line(struct by_hand *hand, uint32_t kind, uint32_t h, st
 {
 	const bool counts = hand->plan.machine.line.advance == ADVANCE_COUNT;
 	uint8_t byte = (uint8_t)(counts ? 0x87u : 0x90u | row.next);
-	byte = (uint8_t)(byte | pier_bit(row.step, 3) | (counts ? pier_bit(row.clear, 4) : 0) | pier_bit(!(row.asserted & SYNC), 5) | pier_bit(row.asserted & BLANK, 6));
+	byte = (uint8_t)(byte | pier_bit(row.step, 3) | (counts ? pier_bit(row.clear, 4) : 0));
+	byte = (uint8_t)(byte | pier_bit(!(row.asserted & SYNC), 5) | pier_bit(row.asserted & BLANK, 6));
 	hand->images[PIER_LINE].bytes[h + 8 * kind] = byte;
 }
 
@@ -158,6 +159,38 @@ static inline struct proofs *prove_pier(const struct by_hand *hand)
 	struct proofs *proofs = proofs_run(&hand->timeline, hand->images, hand->plan.machine.line.advance == ADVANCE_COUNT, 0);
 	assert_non_null(proofs);
 	return proofs;
+}
+
+// Where a fault is said to be: the cell of the frame, the row's stage and address, and the byte of that stage's chip.
+static inline void assert_fault(const struct proofs *proofs, enum proof_kind kind, uint32_t cell, enum stage stage, uint32_t row, uint32_t byte,
+                         const char *what)
+{
+	assert_verdict(proofs, kind, VERDICT_FAIL);
+	const struct counterexample *found = &proofs->proof[kind].counterexample;
+	assert_true(found->present);
+	assert_string_equal(found->what, what);
+	assert_int_equal(found->cell, cell);
+	assert_int_equal(found->stage, stage);
+	assert_int_equal(found->state, row);
+	assert_true(found->byte_known);
+	assert_int_equal(found->byte.chip, stage == STAGE_LINE ? PIER_LINE : PIER_FRAME);
+	assert_int_equal(found->byte.address, row);
+	assert_int_equal(found->byte.value, byte);
+}
+
+// A proof that fails only because another does names no byte.
+static inline void assert_follows(const struct proofs *proofs, enum proof_kind kind, const char *what)
+{
+	assert_verdict(proofs, kind, VERDICT_FAIL);
+	assert_string_equal(proofs->proof[kind].counterexample.what, what);
+	assert_false(proofs->proof[kind].counterexample.byte_known);
+	assert_int_equal(proofs->proof[kind].counterexample.state, NO_STATE);
+}
+
+static inline void end(struct by_hand *hand, struct proofs *proofs)
+{
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
 }
 
 #endif

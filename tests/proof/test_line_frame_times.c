@@ -144,12 +144,6 @@ static void frame_stage_alone(void **test)
 
 // ---- glitches
 
-static void end(struct by_hand *hand, struct proofs *proofs)
-{
-	proofs_destroy(proofs);
-	by_hand_destroy(hand);
-}
-
 static void nothing_unsettled(void **test)
 {
 	(void)test;

@@ -27,12 +27,6 @@ static void assert_row(const struct counterexample *found, enum stage stage, uin
 	assert_int_equal(found->byte.value, byte);
 }
 
-static void end(struct by_hand *hand, struct proofs *proofs)
-{
-	proofs_destroy(proofs);
-	by_hand_destroy(hand);
-}
-
 // Direct tables: H in bits 0 to 2, V in 3 and 4. The frame has H 0 to 2 of V 0 and 1, and H 0 and 1 of V 2. V 3 is of kind 0,
 // and leads to V 0 after three cells, so H 3 to 7 of V 3, whose rows lead to H 0, take 4. The mean line has 8/3 cells.
 static void longest_way(void **test)

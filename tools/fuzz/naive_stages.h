@@ -316,7 +316,8 @@ static bool stages_prepare(struct stages *stages, const scanlatch_images *images
 		return false;
 	naive->expected = fuzz_need(timeline_pins(naive->timeline, arena));
 	for (unsigned stage = 0; stage < STAGE_COUNT; stage++)
-		stages->rows[stage] = fuzz_need(arena_array(arena, (size_t)1 << stages_wiring(stages, (enum stage)stage)->address_bits, sizeof(struct row)));
+		stages->rows[stage] =
+			fuzz_need(arena_array(arena, (size_t)1 << stages_wiring(stages, (enum stage)stage)->address_bits, sizeof(struct row)));
 	stages->lap = fuzz_need(arena_array(arena, naive->timeline->cell_count, sizeof *stages->lap));
 	for (size_t signal = 0; signal < naive->plan->signal_count; signal++)
 		if (naive->plan->signals[signal].origin == FROM_FIELD && naive->plan->signals[signal].auto_codes)
