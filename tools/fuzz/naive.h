@@ -240,7 +240,8 @@ static enum naive_verdict naive_judge(const scanlatch_images *images, uint32_t *
 		return NAIVE_TOO_LARGE;
 	struct arena *arena = fuzz_need(arena_create());
 	naive.states = (uint32_t)1 << naive.wiring.line.state_bits;
-	naive.expected = fuzz_need(timeline_pins(timeline, arena));
+	naive.expected = timeline_pins(timeline, arena);
+	FUZZ_REQUIRE(naive.expected != NULL);
 	naive.rows = fuzz_need(arena_array(arena, naive.states, sizeof *naive.rows));
 	naive.lap = fuzz_need(arena_array(arena, timeline->cell_count, sizeof *naive.lap));
 	for (size_t signal = 0; signal < naive.plan->signal_count; signal++)

@@ -314,7 +314,8 @@ static bool stages_prepare(struct stages *stages, const scanlatch_images *images
 	const struct wiring *wiring = &naive->wiring;
 	if (wiring->line.state_bits + wiring->frame.state_bits + wiring->kind_bits > STAGES_MOST_BITS || wiring->bank_bits > 2)
 		return false;
-	naive->expected = fuzz_need(timeline_pins(naive->timeline, arena));
+	naive->expected = timeline_pins(naive->timeline, arena);
+	FUZZ_REQUIRE(naive->expected != NULL);
 	for (unsigned stage = 0; stage < STAGE_COUNT; stage++)
 		stages->rows[stage] =
 			fuzz_need(arena_array(arena, (size_t)1 << stages_wiring(stages, (enum stage)stage)->address_bits, sizeof(struct row)));
