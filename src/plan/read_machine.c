@@ -133,7 +133,7 @@ void read_machine(struct reader *reader, const struct node *node)
 {
 	struct machine_plan *machine = &reader->plan->machine;
 	const struct node *values[MACHINE_KEYS];
-	struct stage_nodes line = {.outputs = NULL}, frame = {.outputs = NULL};
+	struct stage_nodes line = {0}, frame = {0};
 	const size_t errors_before = diagnostics_error_count(reader->diagnostics);
 	machine->place = node->place;
 	if (!read_form(reader, node) || !read_nodes(reader, node, values, &line, &frame))

@@ -77,7 +77,7 @@ static void find_next_row(const struct trial *trial, enum stage stage, uint32_t 
 	const uint32_t address = machine_row_address(trial->machine, stage, state), mask = low_bits(wired->state_bits);
 	found->stage = stage;
 	found->state = address;
-	if (clears_at_once(wired))
+	if (clears_at_once(wired) && !machine_row(trial->machine, stage, address).clear) // else it is held at 0
 		found->state = ((address + 1) & mask) |
 		               (machine_row_address(trial->machine, stage, machine_next(trial->machine, state)) & ~mask);
 }
@@ -119,6 +119,18 @@ struct counterexample blame_step(const struct trial *trial, uint32_t cell)
 	return found;
 }
 
+struct counterexample blame_kind(const struct trial *trial, uint32_t line, uint32_t wrong_bits)
+{
+	const uint32_t cell = trial->timeline->lines[line].first_cell;
+	struct counterexample found = {.present = true, .bank = trial->bank, .cell = cell, .stage = STAGE_FRAME, .signal = SIZE_MAX};
+	if (trial->at.kind_bits > 0 && line == 0) // where the lap began, and not where it may have ended
+		found.state = trial->timeline->line_count - 1;
+	else
+		found.state = machine_row_address(trial->machine, STAGE_FRAME, trial->lap.states[trial->at.kind_bits > 0 ? cell - 1 : cell]);
+	blame_bits(trial, DATA_KIND, wrong_bits, &found);
+	return found;
+}
+
 // The cell whose row holds what a data signal's pin shows at a cell.
 static uint32_t row_cell_of(const struct trial *trial, uint32_t cell, enum stage stage)
 {
@@ -135,8 +147,7 @@ struct counterexample blame_pin(const struct trial *trial, uint32_t cell, size_t
 	const enum stage stage = plan->signals[signal].stage;
 	struct counterexample found = {.present = true, .bank = trial->bank, .cell = cell, .signal = signal};
 	if (plan->signals[signal].origin == FROM_FIELD) {
-		const uint32_t state = trial->lap.states[cell_before(trial, cell)];
-		found.state = machine_row_address(trial->machine, STAGE_LINE, state);
+		find_next_row(trial, STAGE_LINE, trial->lap.states[cell_before(trial, cell)], &found);
 		blame_bits(trial, next_kind(trial, STAGE_LINE), field_mask(&plan->machine.fields[plan->signals[signal].field]), &found);
 		return found;
 	}
@@ -187,12 +198,56 @@ const char *state_words(const struct trial *trial, uint32_t state)
 	return copy;
 }
 
+// A state of a line-frame machine's second loop whose row is to blame: of a line that the frame does not have, one in which
+// the frame stage goes to the next; of a loop that never steps, any; else one whose H is to blame, as far as can be told.
+static uint32_t state_to_blame(const struct trial *trial, uint32_t state, bool *steps)
+{
+	uint32_t at = state;
+	*steps = false;
+	do {
+		if (machine_steps(trial->machine, at)) {
+			*steps = true;
+			if (at >> trial->at.frame >= trial->timeline->line_count)
+				return at;
+		}
+		at = machine_next(trial->machine, at);
+	} while (at != state);
+	return state;
+}
+
+// A loop that keeps to one line: step is never asserted. Any of its rows should.
+static struct counterexample blame_missing_step(const struct trial *trial, uint32_t state, struct counterexample found)
+{
+	found.state = machine_row_address(trial->machine, STAGE_LINE, state);
+	blame_bits(trial, DATA_STEP, 1, &found);
+	found.what = arena_format(trial->proofs->arena, "no row of it asserts step, expected one that does, so that the line ends");
+	return found;
+}
+
+static struct counterexample blame_next_line(const struct trial *trial, uint32_t state, struct counterexample found)
+{
+	find_next_row(trial, STAGE_FRAME, state, &found);
+	blame_bits(trial, next_kind(trial, STAGE_FRAME), UINT64_MAX, &found);
+	const char *bytes = next_bytes(trial, STAGE_FRAME, found.state);
+	if (bytes != NULL)
+		found.what = arena_format(trial->proofs->arena, "from V 0x%" PRIX32 ", which is no line of the frame, the next V is 0x%" PRIX32
+		                          " (%s), expected one that leads to the frame, such as its first, 0x0", state >> trial->at.frame,
+		                          machine_next(trial->machine, state) >> trial->at.frame, bytes);
+	return found;
+}
+
 struct counterexample blame_loop(const struct trial *trial, uint32_t state)
 {
 	const uint32_t next = machine_next(trial->machine, state), home = trial->lap.states[0];
 	struct counterexample found = {.present = true, .bank = trial->bank, .signal = SIZE_MAX};
-	const uint32_t wrong = trial->wiring.form == FORM_LOOP ? next ^ home : low_bits(trial->wiring.line.state_bits);
-	blame_state_bits(trial, state, wrong, &found);
+	const bool two = trial->wiring.form == FORM_LINE_FRAME;
+	bool steps = true;
+	const uint32_t blamed = two ? state_to_blame(trial, state, &steps) : state;
+	if (!steps)
+		return blame_missing_step(trial, blamed, found);
+	if (two && blamed >> trial->at.frame >= trial->timeline->line_count)
+		return blame_next_line(trial, blamed, found);
+	blame_state_bits(trial, state, two ? low_bits(trial->wiring.line.state_bits) : next ^ home, &found);
 	const char *bytes = next_bytes(trial, found.stage, found.state);
 	const char *next_state = state_words(trial, next), *home_state = state_words(trial, home);
 	if (bytes != NULL && next_state != NULL && home_state != NULL)

@@ -5,7 +5,6 @@
 #include "base/arena.h"
 #include "proof/exchange.h"
 #include "proof/jump.h"
-#include "proof/line_frame.h"
 
 // `bytes`: the bytes that hold the next state, in words: " (…)", or nothing.
 static const char *back_too_early(const struct trial *trial, const char *bytes)
@@ -181,15 +180,16 @@ static bool line_fails(struct trial *trial, struct line_fault *line, uint32_t wr
 	return proof_fails(trial, PROOF_CLOSURE, line->found);
 }
 
-// The stages' numbers tell for certain where they went astray.
+// What the lap found of the two stages.
 static bool stages_fail(struct trial *trial, struct line_fault *line, uint32_t wrong_before)
 {
-	struct counterexample found = line_frame_departure(trial);
+	struct counterexample found = trial->departure;
 	if (!found.present)
 		return !line->found.present || line_fails(trial, line, wrong_before);
-	trial->departed_cell = found.cell + 1;
-	if (line->shown_at <= found.cell)
+	if (line->shown_at < trial->departed_cell)
 		return line_fails(trial, line, wrong_before);
+	if (!trial->departure_certain && wrong_before < trial->departed_cell)
+		blame_other_proof(trial, PROOF_SIGNALS, &found);
 	return proof_fails(trial, PROOF_CLOSURE, found);
 }
 

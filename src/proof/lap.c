@@ -62,7 +62,12 @@ bool lap_finish(struct trial *trial)
 {
 	const struct timeline *timeline = trial->timeline;
 	struct lap *lap = &trial->lap;
-	if (!decoders_read(trial->decoders, trial->proofs->arena, lap->states, trial->expected, timeline->cell_count))
+	const bool two = trial->wiring.form == FORM_LINE_FRAME;
+	if (two && !line_frame_depart(trial))
+		return false;
+	// Off the frame states say nothing of codes.
+	const uint32_t cells = two && trial->departed_cell < timeline->cell_count ? trial->departed_cell : timeline->cell_count;
+	if (!decoders_read(trial->decoders, trial->proofs->arena, lap->states, trial->expected, cells))
 		return false;
 	if (trial->decoders->count > 0)
 		for (uint32_t cell = 0; cell < timeline->cell_count; cell++)

@@ -4,6 +4,9 @@
 
 #include "base/arena.h"
 
+// Starts of lines that are tried, should a fault let lines start differently.
+#define MOST_STARTS 8u
+
 static uint32_t low_bits(unsigned bits)
 {
 	return (uint32_t)(((uint64_t)1 << bits) - 1);
@@ -36,18 +39,83 @@ bool line_frame_number(struct trial *trial)
 	return true;
 }
 
-// The line stage's state after the second step of a machine that is let run: by then even one that came up anywhere is
-// at the start of a line.
-static uint32_t find_line_start(const struct trial *trial, uint32_t state)
+// What the pins of a stage show, as asserted signals.
+static uint64_t stage_pins(const struct trial *trial, enum stage stage, uint32_t state)
 {
-	const uint32_t mask = low_bits(trial->wiring.line.state_bits);
-	unsigned steps = 0;
-	state = machine_settle(trial->machine, state);
-	for (uint64_t left = 2 * (uint64_t)trial->timeline->cell_count + 4 * ((uint64_t)mask + 1); left > 0 && steps < 2; left--) {
-		steps += machine_steps(trial->machine, state);
+	const uint64_t levels = machine_row(trial->machine, stage, machine_row_address(trial->machine, stage, state)).levels;
+	return (levels ^ levels_of(trial->timeline->plan, 0)) & wiring_stage(&trial->wiring, stage)->data_signals;
+}
+
+// For how many cells a machine keeps to the frame, as far as the frame stage's state, held bits and the line stage's data
+// outputs tell.
+static uint32_t kept_cells(const struct trial *trial, uint32_t state)
+{
+	const uint32_t cells = trial->timeline->cell_count;
+	const bool latched = trial->wiring.line.outputs == OUTPUTS_REGISTERED;
+	for (uint32_t cell = 0; cell < cells; cell++) {
+		const uint32_t shown_at = latched ? cell + 1 : cell;
+		if ((state ^ trial->numbered[cell]) >> trial->at.frame != 0 || wrong_held_bits(trial, cell, state) != 0)
+			return cell;
+		if (shown_at < cells && ((stage_pins(trial, STAGE_LINE, state) ^ trial->expected[shown_at]) & trial->wiring.line.data_signals) != 0)
+			return cell;
 		state = machine_next(trial->machine, state);
 	}
-	return steps == 2 ? state & mask : 0;
+	return cells;
+}
+
+struct start_search {
+	const struct trial *trial;
+	uint32_t rest;              // of the state, but for the line stage's
+	unsigned tried;
+	uint32_t states[MOST_STARTS];
+	uint32_t best, best_cells;
+};
+
+// True if there is no need to look further.
+static bool try_start(struct start_search *search, uint32_t line_state)
+{
+	for (unsigned index = 0; index < search->tried; index++)
+		if (search->states[index] == line_state)
+			return false;
+	search->states[search->tried++] = line_state;
+	const uint32_t cells = kept_cells(search->trial, machine_settle(search->trial->machine, search->rest | line_state));
+	if (search->tried == 1 || cells > search->best_cells) {
+		search->best = line_state;
+		search->best_cells = cells;
+	}
+	return search->best_cells == search->trial->timeline->cell_count || search->tried == MOST_STARTS;
+}
+
+// The state that most of the line stage's rows lead to: those of the last cells, and the spare ones. 0 when memory is out.
+static uint32_t commonest_next(const struct trial *trial)
+{
+	const uint32_t mask = low_bits(trial->wiring.line.state_bits);
+	uint32_t *counts = arena_array(trial->arena, (size_t)mask + 1, sizeof *counts), commonest = 0;
+	for (uint32_t address = 0; counts != NULL && address >> trial->wiring.line.address_bits == 0; address++) {
+		const uint32_t next = machine_row(trial->machine, STAGE_LINE, address).next;
+		if (++counts[next] > counts[commonest])
+			commonest = next;
+	}
+	return commonest;
+}
+
+// The line stage's state after a step of a machine that is let run: from the second on even one that came up anywhere is
+// at the start of a line. Should lines start differently or never end, the one from which the frame is kept to the longest.
+static uint32_t find_line_start(const struct trial *trial, uint32_t rest)
+{
+	const uint32_t mask = low_bits(trial->wiring.line.state_bits);
+	struct start_search search = {.trial = trial, .rest = rest};
+	uint32_t state = machine_settle(trial->machine, rest);
+	unsigned steps = 0;
+	for (uint64_t left = 2 * (uint64_t)trial->timeline->cell_count + 4 * ((uint64_t)mask + 1); left > 0; left--) {
+		const bool stepped = machine_steps(trial->machine, state);
+		state = machine_next(trial->machine, state);
+		steps += stepped && steps < 2;
+		if (stepped && steps == 2 && try_start(&search, state & mask))
+			return search.best;
+	}
+	try_start(&search, commonest_next(trial));
+	return search.best;
 }
 
 uint32_t line_frame_start(const struct trial *trial, bool has_start, uint32_t line_start)
@@ -59,14 +127,9 @@ uint32_t line_frame_start(const struct trial *trial, bool has_start, uint32_t li
 		state |= (uint32_t)1 << at->step;
 	if (at->kind_bits > 0)
 		state |= (machine_row(trial->machine, STAGE_FRAME, timeline->line_count - 1).kind & low_bits(at->kind_bits)) << at->kind;
-	return state | (has_start ? line_start : find_line_start(trial, state));
-}
-
-// What the pins of a stage show, as asserted signals.
-static uint64_t stage_pins(const struct trial *trial, enum stage stage, uint32_t state)
-{
-	const uint64_t levels = machine_row(trial->machine, stage, machine_row_address(trial->machine, stage, state)).levels;
-	return (levels ^ levels_of(trial->timeline->plan, 0)) & wiring_stage(&trial->wiring, stage)->data_signals;
+	if (has_start)
+		return state | line_start;
+	return numbers_cells(trial) ? state : state | find_line_start(trial, state);
 }
 
 // The pins of the frame stage, looked up when it steps.

@@ -10,15 +10,16 @@
 // trial->numbered, in the proofs' arena. False when memory is out.
 bool line_frame_number(struct trial *trial);
 
-// The whole state in the frame's first cell. With has_start, the line stage's is line_start; otherwise it is found: every
-// line begins in the same. Cannot fail.
+// The whole state in the frame's first cell. With has_start, the line stage's is line_start; otherwise, if it does not number
+// the cells, it is found: every line begins in the same. Cannot fail.
 uint32_t line_frame_start(const struct trial *trial, bool has_start, uint32_t line_start);
 
 // Runs the lap from a state, into trial->lap, whose arrays are there. Cannot fail.
 void line_frame_lap(struct trial *trial, uint32_t start);
 
-// Closure, as far as the two stages are concerned: the first cell at which a stage holds another number than planned, or
-// does not come back. `present` is false if there is none; `what` is NULL when memory is out.
-struct counterexample line_frame_departure(const struct trial *trial);
+// Finds where the lap's stages leave the plan: the first cell at which one holds another number than planned, or does not come
+// back, or a line of the wrong kind, if anything comes of it. Fills departed_cell, departure and departure_certain. Decoded
+// pins need not be known. False when memory is out.
+bool line_frame_depart(struct trial *trial);
 
 #endif

@@ -47,7 +47,10 @@ struct trial {
 	bool has_start;               // the plan's; otherwise `start` was found in the images
 	uint32_t start;
 	struct lap lap;
-	uint32_t departed_cell;       // found by closure: the first cell that the states should not have come to; UINT32_MAX if there is none
+	uint32_t departed_cell;       // found by closure (line-frame: with the lap): the first cell that the states should not have come to;
+	                              // UINT32_MAX if there is none
+	struct counterexample departure; // line-frame: the fault there; `present` is false if there is none
+	bool departure_certain;
 	struct ways *ways;            // found by power-up for upset; NULL if the lap is not closed
 	struct upset_sums upset_sums;
 };
@@ -93,9 +96,13 @@ struct counterexample blame_pin(const struct trial *trial, uint32_t cell, size_t
 struct counterexample blame_next(const struct trial *trial, uint32_t cell, uint32_t wrong_bits);
 // The same for the pin of step at a cell.
 struct counterexample blame_step(const struct trial *trial, uint32_t cell);
+// The same for the kind of a line, at its first cell.
+struct counterexample blame_kind(const struct trial *trial, uint32_t line, uint32_t wrong_bits);
 // Turns a counterexample whose words are made into one that may only follow from an earlier fault that another proof
 // shows: it names no row and no byte. Its words are NULL when memory is out.
 void blame_other_proof(const struct trial *trial, enum proof_kind kind, struct counterexample *found);
+// The pins of a cell that can be judged, whether the lap ended well or not. Cannot fail.
+uint64_t sure_pins(const struct trial *trial, uint32_t cell);
 // From which cell on pins are judged, 0 or 1: the latched pins of cell 0 come from where the lap ended, so that they
 // are judged last if it did not end well. Cannot fail.
 uint32_t first_judged_cell(const struct trial *trial);
@@ -110,7 +117,7 @@ const char *next_bytes(const struct trial *trial, enum stage stage, uint32_t add
 // A state in words: "0x1A3"; of a line-frame machine "H 0x5, step 0, kind 1, V 0x20C". In the proofs' arena; NULL when memory is out.
 const char *state_words(const struct trial *trial, uint32_t state);
 // A counterexample at a state of a second loop, without a cell. Its words, "its next state is …", say what would mend its
-// row, and are NULL when memory is out.
+// row (of a line-frame machine, one of its rows: "no row of it asserts step, …"), and are NULL when memory is out.
 struct counterexample blame_loop(const struct trial *trial, uint32_t state);
 #define ANY_WIRE (~0u)
 // The chip of a stage with the longest access time among those that carry one of some wires (1u << enum data_wire_kind, or ANY_WIRE); of

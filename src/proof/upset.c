@@ -136,9 +136,12 @@ static bool upset_fails(struct trial *trial, const struct tally *tally)
 	found.cell = tally->lost_cell;
 	if (was == NULL || is == NULL || loops == NULL)
 		found.what = NULL;
+	const char *bit = trial->wiring.form == FORM_LOOP ? arena_format(trial->proofs->arena, "bit %u", tally->lost_bit) : "one bit";
+	if (bit == NULL)
+		found.what = NULL;
 	if (found.what != NULL)
-		found.what = arena_format(trial->proofs->arena, "with bit %u flipped, state %s becomes %s, from which the frame is never "
-		                          "regained: state %s is on a second loop, %s", tally->lost_bit, was, is, loops, found.what);
+		found.what = arena_format(trial->proofs->arena, "with %s flipped, state %s becomes %s, from which the frame is never "
+		                          "regained: state %s is on a second loop, %s", bit, was, is, loops, found.what);
 	return proof_fails(trial, PROOF_UPSET, found);
 }
 

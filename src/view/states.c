@@ -94,7 +94,7 @@ void put_state_bit(struct text *out, const struct proofs *proofs, unsigned bit)
 	list_parts(proofs, parts);
 	const struct part_view *part = part_of_bit(parts, bit);
 	if (part->name[0] == 's')
-		text_put(out, "step");
+		text_put(out, "the step latch");
 	else
 		text_printf(out, "bit %u of %s", bit - part->low, part->name);
 }

@@ -105,7 +105,9 @@ static inline size_t add_line(struct by_hand *hand, const char *name, uint32_t c
 	struct laid_line *type = &hand->types[index];
 	type->cells = cells;
 	type->asserted = arena_array(hand->arena, cells, sizeof *type->asserted);
+	type->region_of_cell = arena_array(hand->arena, cells, sizeof *type->region_of_cell); // all in one region
 	assert_non_null(type->asserted);
+	assert_non_null(type->region_of_cell);
 	for (uint32_t cell = 0; cell < cells; cell++) {
 		type->asserted[cell] = asserted[cell];
 		type->ticks += planned_ticks(hand, asserted[cell]);

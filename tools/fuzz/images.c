@@ -155,7 +155,7 @@ static void judge_proofs(const scanlatch_images *images)
 	const enum naive_verdict naive = naive_judge(images, &longest);
 	FUZZ_REQUIRE(naive != NAIVE_TOO_LARGE);
 	FUZZ_REQUIRE(scanlatch_proofs_failed(proofs, false) == (naive == NAIVE_BAD));
-	FUZZ_REQUIRE(naive == NAIVE_BAD || proofs->proofs->power_up.longest_cells == longest);
+	FUZZ_REQUIRE(naive == NAIVE_BAD || proofs->proofs[0]->power_up.longest_cells == longest);
 	char *text = fuzz_need(scanlatch_proofs_text(proofs, true)), *json = fuzz_need(scanlatch_proofs_json(proofs));
 	scanlatch_free(text);
 	scanlatch_free(json);

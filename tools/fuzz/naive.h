@@ -72,7 +72,9 @@ static inline bool naive_level(const struct data_wire *wire, const struct row *r
 	case DATA_NEXT: return row->next >> wire->index & 1;
 	case DATA_CLEAR: return row->clear;
 	case DATA_SIGNAL: return row->levels >> wire->index & 1;
-	case DATA_OPEN: return true;
+	case DATA_OPEN:
+	case DATA_KIND:
+	case DATA_STEP: return true;
 	}
 	return true;
 }
@@ -231,14 +233,15 @@ static enum naive_verdict naive_bank(struct naive *naive)
 // Judges complete images. *longest (may be NULL) becomes the longest way home.
 static enum naive_verdict naive_judge(const scanlatch_images *images, uint32_t *longest)
 {
-	const struct timeline *timeline = images->plan->timeline;
+	const struct timeline *timeline = images->plan->members[0].timeline;
 	struct naive naive = {.images = images, .plan = timeline->plan, .timeline = timeline};
 	naive.wiring = wiring_of(timeline->plan);
 	if (naive.wiring.line.state_bits > NAIVE_STATE_BITS || naive.wiring.bank_bits > 2)
 		return NAIVE_TOO_LARGE;
 	struct arena *arena = fuzz_need(arena_create());
 	naive.states = (uint32_t)1 << naive.wiring.line.state_bits;
-	naive.expected = fuzz_need(timeline_pins(timeline, arena));
+	naive.expected = timeline_pins(timeline, arena);
+	FUZZ_REQUIRE(naive.expected != NULL);
 	naive.rows = fuzz_need(arena_array(arena, naive.states, sizeof *naive.rows));
 	naive.lap = fuzz_need(arena_array(arena, timeline->cell_count, sizeof *naive.lap));
 	for (size_t signal = 0; signal < naive.plan->signal_count; signal++)

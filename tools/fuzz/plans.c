@@ -1,7 +1,7 @@
 // Plans: whatever the text is, it is read into a plan or refused with an error; a plan is made into images or refused
 // with an error; images that were made prove; and images that were spoilt prove exactly if a plainer machine says
 // that they still follow the plan.
-#include "naive.h"
+#include "naive_stages.h"
 
 #define SPOILT 10u // sets of images for each plan
 #define PROVED_CELLS 300000u
@@ -16,7 +16,7 @@ static const char *const words[] = {
 	"chips", "part", "speed", "label", "address", "next", "bank", "parts", "access", "timing", "share", "margin",
 	"latch", "delay", "setup", "sweep", "within", "Hz", "MHz", "us", "ns", "ticks", "dots", "ppm", "28C16",
 	"28C64", "28C256", "27C1024", "27C080", "XROM", "col", "row", "0x10", "standard", "grade", "kind", "stage",
-	"step", NULL,
+	"step", "line-frame", "loop", "kind.0", "state.0", "bits", NULL,
 };
 
 static void require_text(char *text)
@@ -43,7 +43,7 @@ static void require_refusal(const scanlatch_messages *messages)
 
 static enum verdict verdict_of(const scanlatch_proofs *proofs, enum proof_kind kind)
 {
-	return proofs->proofs->proof[kind].verdict;
+	return proofs->proofs[0]->proof[kind].verdict;
 }
 
 // Proves images, and requires that the report can be written and that a plainer machine agrees. True if closure,
@@ -58,10 +58,11 @@ static bool prove(const scanlatch_images *images)
 	FUZZ_REQUIRE(passed || scanlatch_proofs_failed(proofs, false));
 	require_text(scanlatch_proofs_text(proofs, false));
 	require_json(scanlatch_proofs_json(proofs));
-	const enum naive_verdict naive = naive_judge(images, &longest);
+	const bool two = images->plan->plan->machine.form == FORM_LINE_FRAME;
+	const enum naive_verdict naive = two ? stages_judge(images, &longest) : naive_judge(images, &longest);
 	FUZZ_REQUIRE(naive != NAIVE_GOOD || passed);
 	FUZZ_REQUIRE(naive != NAIVE_BAD || !passed);
-	FUZZ_REQUIRE(naive != NAIVE_GOOD || proofs->proofs->power_up.longest_cells == longest);
+	FUZZ_REQUIRE(naive != NAIVE_GOOD || proofs->proofs[0]->power_up.longest_cells == longest);
 	scanlatch_proofs_destroy(proofs);
 	return passed;
 }
@@ -139,17 +140,24 @@ static void swap_states(const struct naive *naive, const struct table *table, ui
 static void spoil_and_prove(const scanlatch_images *made, uint64_t *random, scanlatch_messages *messages)
 {
 	scanlatch_images *read = read_back(made, messages);
+	if (made->plan->plan->machine.form == FORM_LINE_FRAME) {
+		stages_spoil(read, random);
+		prove(read);
+		scanlatch_images_destroy(read);
+		return;
+	}
+	const struct table *table = made->members[0].table;
 	struct naive naive = {.images = read, .plan = made->plan->plan, .wiring = wiring_of(made->plan->plan)};
 	naive.states = (uint32_t)1 << naive.wiring.line.state_bits;
 	naive.bank = (uint32_t)fuzz_below(random, (size_t)1 << naive.wiring.bank_bits);
 	const size_t kind = fuzz_below(random, 4);
 	bool must_fail = false;
 	if (kind == 0)
-		must_fail = flip_signal(&naive, made->table, random);
+		must_fail = flip_signal(&naive, table, random);
 	else if (kind == 1)
 		divert(&naive, random);
 	else if (kind == 2 && naive.wiring.line.advance == ADVANCE_TABLE && naive.wiring.bank_bits == 0 && naive.states <= 4096)
-		swap_states(&naive, made->table, random);
+		swap_states(&naive, table, random);
 	else
 		flip_anywhere(&naive, random);
 	const bool passed = prove(read);
@@ -159,8 +167,9 @@ static void spoil_and_prove(const scanlatch_images *made, uint64_t *random, scan
 
 static void judge_images(const scanlatch_images *made, uint64_t random, bool colour_kept, scanlatch_messages *messages)
 {
-	const struct timeline *timeline = made->plan->timeline;
-	if (timeline->cell_count > PROVED_CELLS || timeline->plan->machine.line.state_bits > PROVED_STATE_BITS)
+	const struct timeline *timeline = made->plan->members[0].timeline;
+	const struct wiring wiring = wiring_of(timeline->plan);
+	if (timeline->cell_count > PROVED_CELLS || feedback_of(&wiring).bits > PROVED_STATE_BITS || made->plan->set != NULL)
 		return;
 	scanlatch_proofs *proofs = fuzz_need(scanlatch_prove(made));
 	const bool sweep_kept = verdict_of(proofs, PROOF_SWEEP) != VERDICT_FAIL;
