@@ -55,9 +55,10 @@ static struct fraction address_delay(const struct trial *trial, enum stage stage
 static void add_pass(const struct trial *trial, enum stage stage, unsigned kinds, bool delay, struct speed_result *result)
 {
 	struct speed_pass *pass = &result->passes[result->pass_count++];
-	*pass = (struct speed_pass){.has_delay = delay, .delay_s = FRACTION_ZERO, .chip = slowest_chip(&trial->wiring, stage, kinds)};
-	if (delay)
-		pass->delay_s = address_delay(trial, stage, &pass->counter);
+	*pass = (struct speed_pass){.has_delay = delay, .chip = slowest_chip(&trial->wiring, stage, kinds)};
+	pass->delay_s = address_delay(trial, stage, &pass->counter);
+	if (!delay)
+		pass->delay_s = FRACTION_ZERO;
 	pass->access_s = trial->wiring.chips[pass->chip].access_s;
 }
 

@@ -60,8 +60,8 @@ void view_must(struct text *out, const char *name, bool kept, const char *words,
 //                 asynchronous pin, and if so time clear_unsettled (_s, _ns) and "clear_chip": its label, and "passing": { STATE that
 //                 falls to 0 at once, "spikes": [direct signals that spike meanwhile] }; in a line-frame machine these are the line
 //                 stage's, and "frame": { the same keys of the frame stage } }
-//   "speed":    { "of": "cell" or "line" (the frame stage's own way), times cell (or line), available, delay and access
-//                 (of the first look-up), setup, margin, needed, slack (_s, _ns), "passes": [ { "chip": label of the slowest, "counter": a counter holds the address, times
+//   "speed":    { "of": "cell" or "line" (the frame stage's own way), times cell (or line), available, delay (of the
+//                 first look-up) and access (of the slowest), setup, margin, needed, slack (_s, _ns), "passes": [ { "chip": label of the slowest, "counter": a counter holds the address, times
 //                 delay (0 where the address is another chip's answer), access } ], one look-up after the other }
 //   "sweep":    { "sweeps": [ { "bits": as the plan has them, "kept": true or false, "values", "missing", and if some are
 //                 "first_missing", times worst_gap and within (_s, _ms), "worst_value" } ] }

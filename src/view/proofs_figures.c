@@ -370,7 +370,7 @@ static void put_pass(struct text *out, const struct proofs *proofs, const struct
 static void put_sum(struct text *out, const struct proofs *proofs)
 {
 	const struct speed_result *speed = &proofs->speed;
-	const bool twice = plan_of(proofs)->machine.form == FORM_LOOP && speed->pass_count == 2;
+	const bool twice = plan_of(proofs)->machine.form == FORM_LOOP && speed->pass_count == 2 && speed->passes[0].chip == speed->passes[1].chip;
 	text_put(out, twice ? "2 x (" : "");
 	for (unsigned pass = 0; pass < (twice ? 1 : speed->pass_count); pass++) {
 		text_put(out, pass > 0 ? " + " : "");

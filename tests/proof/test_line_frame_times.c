@@ -106,6 +106,19 @@ static void direct_kind(void **test)
 	by_hand_destroy(hand);
 }
 
+// A latched kind comes at the latch's time, should the line stage's counter be faster: 50 + 150 + 25 + 20, and 40 where it is not.
+static void latched_kind(void **test)
+{
+	(void)test;
+	struct by_hand *hand = timed(sync_latched, table_latched);
+	hand->plan.timing.latch_delay_s = NS(50);
+	struct proofs *proofs = assert_slowest(hand, false, 1, 245, 255);
+	assert_pass(&proofs->speed.passes[0], true, false, 50, PIER_LINE, 150);
+	proofs_destroy(proofs);
+	by_hand_destroy(hand);
+	assert_speed(timed(sync_latched, table_latched), false, 1, 40 + 150 + 25 + 20, 265);
+}
+
 // Without kinds nothing waits for the frame stage.
 static void no_kind_to_wait_for(void **test)
 {
@@ -297,6 +310,7 @@ int main(void)
 	const struct CMUnitTest tests[] = {
 		cmocka_unit_test(latched_stages),
 		cmocka_unit_test(direct_kind),
+		cmocka_unit_test(latched_kind),
 		cmocka_unit_test(no_kind_to_wait_for),
 		cmocka_unit_test(direct_step),
 		cmocka_unit_test(frame_stage_alone),
