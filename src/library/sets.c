@@ -1,6 +1,25 @@
+#include <errno.h>
+#include <sys/stat.h>
+
 #include "base/arena.h"
 #include "catalogue/catalogue.h"
 #include "library/library.h"
+#include "plan/characters.h"
+
+// True if a bank's plan is there to be read. What waits for somebody to write, or never ends, is no plan. A folder is told by the reader.
+static bool is_plan_there(const struct set_bank *bank, const char *path, struct diagnostics *diagnostics)
+{
+	struct stat status;
+	if (stat(path, &status) != 0 && (errno == ENOENT || errno == ENOTDIR)) {
+		diagnose(diagnostics, RULE_BANK_PLAN, bank->place, "bank %u: there is no file \"%s\"", bank->number, SHORT(bank->path));
+		diagnose_hint(diagnostics, "paths are relative to the set's folder");
+		return false;
+	}
+	if (stat(path, &status) != 0 || S_ISREG(status.st_mode) || S_ISDIR(status.st_mode))
+		return true;
+	diagnose(diagnostics, RULE_BANK_PLAN, bank->place, "bank %u: \"%s\" is no ordinary file", bank->number, SHORT(bank->path));
+	return false;
+}
 
 static struct plan *load_bank(struct plan_set *plans, const struct catalogue *catalogue, size_t bank, scanlatch_messages *messages)
 {
@@ -10,6 +29,8 @@ static struct plan *load_bank(struct plan_set *plans, const struct catalogue *ca
 	char *bytes = NULL;
 	size_t length = 0;
 	const struct source *source = NULL;
+	if (path != NULL && !is_plan_there(&set->banks[bank], path, messages->diagnostics))
+		return NULL;
 	if (path != NULL && read_plan_file(plans->arena, path, &bytes, &length, messages))
 		source = keep_source(messages->names, path, bytes, length);
 	if (source != NULL)

@@ -106,5 +106,10 @@ open("both.bin", "wb").write(b"".join((ebb, flood)[at // 4 % 2][at:at + 4] for a
 same 'codes that differ between banks: exit status' 1 $?
 holds 'codes that differ between banks: said' grep -qx 'FAIL  signals   sync is asserted in code 1, but in code 0 in bank 0: the decoder is the same' stdout
 sed 's/^bank: .*/bank: 8 bits/' jetty.yaml >wide.yaml
+mkfifo pipe.yaml
+sed 's/2: long.yaml/2: pipe.yaml/' jetty.yaml >piped.yaml
+timeout 10 "$SCANLATCH" check piped.yaml >stdout 2>stderr
+same 'a pipe for a plan: exit status' 2 $?
+holds 'a pipe for a plan: said' grep -q 'bank 2: "pipe.yaml" is no ordinary file \[bank-plan\]' stderr
 same 'banks in ranges' 'banks 0, 1 and 3 to 255: short (short.yaml)' "$("$SCANLATCH" check wide.yaml | grep '^banks')"
 finish
