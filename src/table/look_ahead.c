@@ -199,6 +199,8 @@ static void report_changes(struct comparison *comparison, uint32_t line, uint32_
 			diagnose_hint(comparison->diagnostics,
 			              "its lead of %lld cell%s moves its edges away from the lines' ends; leave it out, or give it stage: line",
 			              (long long)signal->lead_cells, signal->lead_cells == 1 || signal->lead_cells == -1 ? "" : "s");
+		else if (signal->role == ROLE_STRETCH)
+			diagnose_hint(comparison->diagnostics, "give it stage: line");
 		else
 			diagnose_hint(comparison->diagnostics, "assert it in all regions of the line type or in none, or give it stage: line");
 	}
