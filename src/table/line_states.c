@@ -5,6 +5,7 @@
 #include "base/arena.h"
 #include "table/attempt.h"
 #include "table/closing.h"
+#include "table/guard.h"
 #include "table/line_frame.h"
 #include "table/solve.h"
 
@@ -105,6 +106,18 @@ static bool constrain(struct types *types, struct arena *arena, struct constrain
 	return constraints_create(constraints, arena, &types->timeline, types->pins, types->table->period, bits);
 }
 
+// Keeps a wrong bit before the end of any line from going unseen.
+static bool guard_lines(struct types *types, const struct constraints *constraints, struct arena *arena)
+{
+	const struct timeline *timeline = &types->timeline;
+	bool *used = guard_states(constraints, arena, types->states);
+	for (uint32_t line = 0; used != NULL && line < timeline->line_count; line++) {
+		const uint32_t first = timeline->lines[line].first_cell, end = first + timeline->types[timeline->lines[line].type].cells;
+		guard_last_state(constraints, used, first, end - 1, types->state_mask, types->states);
+	}
+	return used != NULL;
+}
+
 // Looks for states with all first cells in one state, or free of each other for NO_STATE. *jumps is how many edges are not
 // quiet. False with faults if there are none.
 static bool attempt(struct types *types, uint32_t first, uint64_t *jumps, struct faults *faults)
@@ -119,7 +132,7 @@ static bool attempt(struct types *types, uint32_t first, uint64_t *jumps, struct
 	if (!found)
 		faults->memory_out = true;
 	found = found && attempt_start(&solver, false, 0, faults);
-	if (found && !closing_count(&solver.assignment, arena, jumps))
+	if (found && (!closing_count(&solver.assignment, arena, jumps) || !guard_lines(types, &constraints, arena)))
 		found = faults_memory(faults);
 	arena_destroy(arena);
 	return found;

@@ -36,7 +36,11 @@ static bool solve_period(struct table *table, const struct timeline *folded, str
 		return count_period(table, &constraints, scratch, faults);
 	if (!solve_states(&constraints, scratch, table->state_of_cell, faults))
 		return false;
-	return guard_last_state(&constraints, scratch, table->state_of_cell) || faults_memory(faults);
+	bool *used = guard_states(&constraints, scratch, table->state_of_cell);
+	if (used == NULL)
+		return faults_memory(faults);
+	guard_last_state(&constraints, used, 0, table->period - 1, constraints.state_mask, table->state_of_cell);
+	return true;
 }
 
 // The timeline with the holds of all laps of the table's period in each. False if they contradict each other.
