@@ -239,6 +239,52 @@ static void parts_of_a_field_make_up_the_field(void **state)
 	}
 }
 
+static struct fraction half(struct fraction value)
+{
+	return quotient(value, fraction_whole(2));
+}
+
+static void assert_bounds(const struct limit *limit, struct fraction low, struct fraction high)
+{
+	assert_true(limit->has_low && limit->has_high);
+	assert_equal(limit->low, low);
+	assert_equal(limit->high, high);
+}
+
+// The rest of a range: what is left of `whole` after the other range took its most and its least.
+static void assert_rest(const struct limit *limit, struct fraction whole, const struct limit *other)
+{
+	assert_bounds(limit, difference(whole, other->high), difference(whole, other->low));
+}
+
+// Derived low and high are the widest that the published ones leave.
+static void derived_bounds_follow_from_the_published_ones(void **state)
+{
+	static const char *const names[] = {"composite-525", "composite-625", "component-525", "component-625", "mono-525"};
+	const struct standards *standards = standards_of(state);
+	for (size_t index = 0; index < COUNT_OF(names); index++) {
+		const struct standard *standard = catalogue_standard(standards, names[index]);
+		const struct limit *of[ITEM_COUNT];
+		for (size_t item = 0; item < ITEM_COUNT; item++)
+			of[item] = standard_limit(standard, (enum limit_item)item, GRADE_STUDIO);
+		const struct fraction line = quotient(fraction_whole(1), of[ITEM_LINE_RATE]->nominal);
+		const struct limit *start = of[ITEM_PICTURE_START], *porch = of[ITEM_FRONT_PORCH], *sync = of[ITEM_SYNC_WIDTH];
+		assert_rest(of[ITEM_PICTURE_WIDTH], line, of[ITEM_HORIZONTAL_BLANKING]);
+		assert_rest(of[ITEM_BROAD_WIDTH], half(line), of[ITEM_SERRATION_WIDTH]);
+		assert_rest(of[ITEM_PICTURE_HEIGHT], of[ITEM_LINES_PER_FIELD]->nominal, of[ITEM_VERTICAL_BLANKING]);
+		assert_bounds(of[ITEM_HORIZONTAL_CENTRE], half(sum(start->low, difference(line, porch->high))),
+		              half(sum(start->high, difference(line, porch->low))));
+		assert_bounds(of[ITEM_BACK_PORCH], difference(start->low, sync->high), difference(start->high, sync->low));
+		const struct fraction before = of[ITEM_PRE_EQUALISING_LINES]->nominal;
+		assert_bounds(of[ITEM_PICTURE_TOP], difference(of[ITEM_VERTICAL_BLANKING]->low, before),
+		              difference(of[ITEM_VERTICAL_BLANKING]->high, before));
+		// The picture ends where the pulses before 0V begin, so its middle moves half as far as its top.
+		const struct fraction field = difference(of[ITEM_LINES_PER_FIELD]->nominal, before);
+		assert_bounds(of[ITEM_VERTICAL_CENTRE], half(sum(of[ITEM_PICTURE_TOP]->low, field)),
+		              half(sum(of[ITEM_PICTURE_TOP]->high, field)));
+	}
+}
+
 static void colour_fits_the_line(void **state)
 {
 	const struct standards *standards = standards_of(state);
@@ -532,6 +578,7 @@ int main(void)
 		cmocka_unit_test(limits_are_the_published_ones),
 		cmocka_unit_test(parts_of_a_line_make_up_the_line),
 		cmocka_unit_test(parts_of_a_field_make_up_the_field),
+		cmocka_unit_test(derived_bounds_follow_from_the_published_ones),
 		cmocka_unit_test(colour_fits_the_line),
 		cmocka_unit_test(sampling_divides_into_lines),
 		cmocka_unit_test(burst_pauses_are_the_published_ones),
