@@ -132,11 +132,16 @@ char *scanlatch_proofs_json(const scanlatch_proofs *proofs);
 enum { SCANLATCH_FILE_BIN = 1, SCANLATCH_FILE_HEX = 2 };
 char *scanlatch_manifest(const scanlatch_proofs *proofs, unsigned files);
 
-/* ---- Catalogue ---- */
+/* ---- Catalogues ---- */
 
-/* The catalogue of parts as text or JSON. NULL when memory is out. */
+/* The catalogues of parts, of standards and of crystals as text or JSON (shapes: src/view/parts.h, standards.h, crystals.h).
+ * NULL when memory is out. */
 char *scanlatch_parts_text(void);
 char *scanlatch_parts_json(void);
+char *scanlatch_standards_text(void);
+char *scanlatch_standards_json(void);
+char *scanlatch_crystals_text(void);
+char *scanlatch_crystals_json(void);
 
 #ifdef __cplusplus
 }

@@ -2,9 +2,8 @@
 
 #include <string.h>
 
-#include "base/arena.h"
 #include "catalogue/data.h"
-#include "plan/read.h"
+#include "catalogue/reading.h"
 
 #define LIMIT_PARTS 1000   // of a section
 #define LIMIT_GRADES 32    // of a part
@@ -40,12 +39,6 @@ static const struct key time_keys[TIME_KEY_COUNT] = {
 
 // The read_… functions below report what is wrong and read on; what they leave behind is used only if nothing was reported.
 
-static void read_text(struct reader *reader, const struct node *node, const char *what, const char **result)
-{
-	if (node != NULL)
-		read_scalar(reader, node, what, result);
-}
-
 // { time: …, source: … }; the node may be absent, which has been reported then.
 static void read_sourced_time(struct reader *reader, const struct node *node, const char *what, struct fraction *seconds,
                               const char **source)
@@ -55,7 +48,7 @@ static void read_sourced_time(struct reader *reader, const struct node *node, co
 		return;
 	if (values[TIME_TIME] != NULL)
 		read_time(reader, values[TIME_TIME], what, true, seconds);
-	read_text(reader, values[TIME_SOURCE], "source", source);
+	catalogue_text(reader, values[TIME_SOURCE], "source", source);
 }
 
 // Puts a grade among `count` that are there already, fastest first.
@@ -75,17 +68,9 @@ static bool has_grade(const struct access_grade *grades, size_t count, struct fr
 	return false;
 }
 
-static bool check_count(struct reader *reader, const struct node *node, const char *what, size_t limit)
-{
-	if (node->count >= 1 && node->count <= limit)
-		return true;
-	diagnose(reader->diagnostics, RULE_TOO_MANY, node->place, "%s: wanted 1 to %zu, found %zu", what, limit, node->count);
-	return false;
-}
-
 static void read_grades(struct reader *reader, const struct node *node, struct part *part)
 {
-	if (node == NULL || !expect_kind(reader, node, NODE_LIST, "access") || !check_count(reader, node, "access", LIMIT_GRADES))
+	if (node == NULL || !expect_kind(reader, node, NODE_LIST, "access") || !catalogue_count(reader, node, "access", LIMIT_GRADES))
 		return;
 	struct access_grade *grades = reader_array(reader, node->count, sizeof *grades);
 	if (grades == NULL)
@@ -127,15 +112,15 @@ static void read_part(struct reader *reader, const struct node_pair *pair, struc
 		return;
 	part->address_pins = read_address_pins(reader, values[PART_ADDRESS_PINS]);
 	part->data_pins = read_data_pins(reader, values[PART_DATA_PINS]);
-	read_text(reader, values[PART_PACKAGE], "package", &part->package);
-	read_text(reader, values[PART_SOURCE], "source", &part->source);
+	catalogue_text(reader, values[PART_PACKAGE], "package", &part->package);
+	catalogue_text(reader, values[PART_SOURCE], "source", &part->source);
 	read_grades(reader, values[PART_ACCESS], part);
 }
 
 static bool check_section(struct reader *reader, const struct node *node, size_t section)
 {
 	const char *name = section_keys[section].name;
-	return node != NULL && expect_kind(reader, node, NODE_MAPPING, name) && check_count(reader, node, name, LIMIT_PARTS);
+	return node != NULL && expect_kind(reader, node, NODE_MAPPING, name) && catalogue_count(reader, node, name, LIMIT_PARTS);
 }
 
 static void read_memories(struct reader *reader, const struct node *node, struct catalogue *catalogue)
@@ -160,7 +145,7 @@ static void read_logic_part(struct reader *reader, const struct node_pair *pair,
 	if (!check_printable_name(reader, pair->key, "part") ||
 	    !read_mapping(reader, pair->value, "a part", logic_keys, key_count, values))
 		return;
-	read_text(reader, values[LOGIC_CONDITIONS], "conditions", &part->conditions);
+	catalogue_text(reader, values[LOGIC_CONDITIONS], "conditions", &part->conditions);
 	read_sourced_time(reader, values[LOGIC_DELAY], "delay", &part->delay_s, &part->delay_source);
 	read_sourced_time(reader, values[LOGIC_SETUP], "setup", &part->setup_s, &part->setup_source);
 }
@@ -232,13 +217,9 @@ const struct catalogue *catalogue_read(struct arena *arena, const struct source 
 
 const struct catalogue *catalogue_load(struct arena *arena, struct diagnostics *diagnostics)
 {
-	struct source *source = arena_alloc(arena, sizeof *source);
-	if (source == NULL) {
-		diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){NULL, 0, 0}, "memory is out");
-		return NULL;
-	}
-	*source = (struct source){"parts.yaml", (const char *)catalogue_parts, catalogue_parts_length};
-	return catalogue_read(arena, source, diagnostics);
+	const struct source *source =
+		catalogue_source(arena, "parts.yaml", catalogue_parts, catalogue_parts_length, diagnostics);
+	return source != NULL ? catalogue_read(arena, source, diagnostics) : NULL;
 }
 
 const struct part *catalogue_part(const struct catalogue *catalogue, const char *name)

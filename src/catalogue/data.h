@@ -5,8 +5,12 @@
 
 #include <stddef.h>
 
-// src/catalogue/parts.yaml. A NUL follows the bytes and is not counted in the length.
+// src/catalogue/parts.yaml, standards.yaml and crystals.yaml. A NUL follows the bytes and is not counted in the length.
 extern const unsigned char catalogue_parts[];
 extern const size_t catalogue_parts_length;
+extern const unsigned char catalogue_standards[];
+extern const size_t catalogue_standards_length;
+extern const unsigned char catalogue_crystals[];
+extern const size_t catalogue_crystals_length;
 
 #endif

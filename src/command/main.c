@@ -9,7 +9,7 @@ const struct command commands[] = {
 	{"check", "read plans or sets, lay out their lines and report, without images", command_check},
 	{"build", "make the images of plans or sets, prove them and write them", command_build},
 	{"prove", "prove images that are there against their plan or set", command_prove},
-	{"list", "print a catalogue: parts", command_list},
+	{"list", "print a catalogue: parts, standards or crystals", command_list},
 };
 const size_t command_count = sizeof commands / sizeof *commands;
 

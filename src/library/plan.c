@@ -5,7 +5,6 @@
 #include "library/library.h"
 #include "view/check.h"
 #include "view/figures.h"
-#include "view/parts.h"
 #include "view/set.h"
 
 const struct source *keep_source(struct arena *arena, const char *name, const char *bytes, size_t length)
@@ -187,35 +186,4 @@ char *scanlatch_plan_json(const scanlatch_plan *plan, bool *kept, bool *advice_k
 	json_put(&object, "name", json_string(scanlatch_plan_name(plan)));
 	json_put(&object, "banks", banks);
 	return take_json(object);
-}
-
-// The catalogue in an arena of its own, which the caller destroys. NULL when memory is out.
-static const struct catalogue *load_catalogue(struct arena *arena)
-{
-	struct diagnostics *diagnostics = diagnostics_create();
-	const struct catalogue *catalogue = arena != NULL && diagnostics != NULL ? catalogue_load(arena, diagnostics) : NULL;
-	diagnostics_destroy(diagnostics);
-	return catalogue;
-}
-
-char *scanlatch_parts_text(void)
-{
-	struct arena *arena = arena_create();
-	const struct catalogue *catalogue = load_catalogue(arena);
-	struct text text = {0};
-	if (catalogue != NULL)
-		view_parts(&text, catalogue);
-	else
-		text.failed = true;
-	arena_destroy(arena);
-	return take_string(&text);
-}
-
-char *scanlatch_parts_json(void)
-{
-	struct arena *arena = arena_create();
-	const struct catalogue *catalogue = load_catalogue(arena);
-	char *string = catalogue != NULL ? take_json(view_parts_json(catalogue)) : NULL;
-	arena_destroy(arena);
-	return string;
 }

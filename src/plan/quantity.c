@@ -28,6 +28,10 @@ static const struct unit units[] = {
 	{"lines", DIMENSION_LINES, 1, 1},
 	{"bit", DIMENSION_BITS, 1, 1},
 	{"bits", DIMENSION_BITS, 1, 1},
+	{"cycle", DIMENSION_CYCLES, 1, 1},
+	{"cycles", DIMENSION_CYCLES, 1, 1},
+	{"pulse", DIMENSION_PULSES, 1, 1},
+	{"pulses", DIMENSION_PULSES, 1, 1},
 	{"ppm", DIMENSION_PPM, 1, 1},
 };
 

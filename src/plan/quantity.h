@@ -16,6 +16,8 @@ enum dimension {
 	DIMENSION_CELLS,
 	DIMENSION_LINES,
 	DIMENSION_BITS,
+	DIMENSION_CYCLES, // of the subcarrier
+	DIMENSION_PULSES,
 	DIMENSION_PPM,
 };
 
@@ -33,14 +35,14 @@ enum quantity_status {
 };
 
 // Reads `[-]NUMBER[/NUMBER] UNIT`, NUMBER being DIGITS[.DIGITS]; spaces around "/" and before the unit are free, but the
-// unit may also follow the number at once. Units: Hz kHz MHz, s ms us ns, tick(s) dot(s) cell(s) line(s) bit(s) ppm.
+// unit may also follow the number at once. Units: Hz kHz MHz, s ms us ns, tick(s) dot(s) cell(s) line(s) bit(s) cycle(s) pulse(s) ppm.
 // Division by zero is QUANTITY_MALFORMED. *result is set only on QUANTITY_OK.
 enum quantity_status quantity_parse(const char *text, struct quantity *result);
 
 // What a status means, as words for a diagnostic ("a number needs a unit"). Cannot fail.
 const char *quantity_status_words(enum quantity_status status);
 
-#define UNITS_LIMIT 18 // of all dimensions
+#define UNITS_LIMIT 22 // of all dimensions
 
 // Puts the names of the units of a dimension, for messages, the plural of those that have one; returns how many. Cannot fail.
 size_t dimension_units(enum dimension dimension, const char **names);

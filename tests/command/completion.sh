@@ -33,7 +33,7 @@ same 'the same for the long option' 'images' "$(offered build tide.yaml --output
 same 'formats' $'bin\nbin,hex\nhex' "$(offered build --format '')"
 same 'record lengths' $'16\n32' "$(offered build --record '')"
 same 'colours' $'always\nauto\nnever' "$(offered check --color '')"
-same 'catalogues' 'parts' "$(offered list '')"
+same 'catalogues' $'crystals\nparts\nstandards' "$(offered list '')"
 same 'options before a command' $'--help\n--version' "$(offered -)"
 same 'an option begun' '--unproven' "$(offered build --u)"
 same 'options after arguments' '--strict' "$(offered check tide.yaml --s)"

@@ -84,10 +84,9 @@ refuses 'prove: a label, then none' 'scanlatch prove: wanted LABEL=FILE, found "
 	prove good.yaml rom0=good.yaml more
 refuses 'prove: a folder and more' \
 	'scanlatch prove: wanted one folder, or LABEL=FILE for each chip, found "." and more' prove good.yaml . rom0=good.yaml
-refuses 'list: nothing' 'scanlatch list: wanted one catalogue (parts), found 0' list
-refuses 'list: two' 'scanlatch list: wanted one catalogue (parts), found 2' list parts parts
-refuses 'list: unknown' 'scanlatch list: there is no catalogue of "ships": wanted parts' list ships
-refuses 'list: later' 'scanlatch list: the catalogue of standards is not in this version yet' list standards
+refuses 'list: nothing' 'scanlatch list: wanted one catalogue (parts, standards or crystals), found 0' list
+refuses 'list: two' 'scanlatch list: wanted one catalogue (parts, standards or crystals), found 2' list parts standards
+refuses 'list: unknown' 'scanlatch list: there is no catalogue of "ships": wanted parts, standards or crystals' list ships
 holds 'no refused command line wrote anything' test ! -e out
 
 # Help and version, wherever they stand.
@@ -208,5 +207,23 @@ print(*[memory["address_pins"] for memory in json.load(open("stdout"))["memories
 ends 'list parts' 0 list parts
 holds 'list parts: the part, its size and its grades' \
 	grep -Eq '^28C010 +128K x 8 +131072 +17 +8 +DIP-32 +120, 150, 200 ns$' stdout
+# Front porch and end of blanking: SMPTE 170M-2004 table 2.
+json 'list --json standards' 0 list standards --json
+same 'list --json standards: a limit, its bounds and its source' '3/2 7/5 8/5 SMPTE 170M-2004 table 2' \
+	"$(python3 -c 'import json
+standards = {standard["name"]: standard for standard in json.load(open("stdout"))["standards"]}
+porch = [limit for limit in standards["composite-525"]["limits"] if limit["item"] == "front porch"][0]
+print(porch["nominal"], porch["low"], porch["high"], porch["source"].split(";")[0])')"
+ends 'list standards' 0 list standards
+holds 'list standards: a limit at both grades' \
+	grep -Eq '^picture start +studio +9\.2 +9\.1 +9\.4 +us +\[[0-9]+\]$' stdout
+holds 'list standards: what a monitor accepts' grep -Eq '^picture start +monitor +- +8\.9 +- +us +\[[0-9]+\]$' stdout
+holds 'list standards: every standard' test 18 = "$(grep -c '^documents: ' stdout)"
+json 'list --json crystals' 0 list crystals --json
+same 'list --json crystals: an exact frequency' '157500000/11' \
+	"$(python3 -c 'import json
+print(*[crystal["hz"] for crystal in json.load(open("stdout"))["crystals"] if crystal["name"] == "14.31818 MHz"])')"
+ends 'list crystals' 0 list crystals
+holds 'list crystals: name, frequency and use' grep -Eq '^17\.734475 MHz +17734475 +17734475 +4 times the subcarrier' stdout
 
 finish

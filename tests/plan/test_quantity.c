@@ -43,6 +43,9 @@ static const struct good_quantity good_quantities[] = {
 	{"9223372036854775807 ticks", DIMENSION_TICKS, INT64_MAX, 1},
 	{"-9223372036854775807 ticks", DIMENSION_TICKS, -INT64_MAX, 1},
 	{"1 dot", DIMENSION_DOTS, 1, 1},
+	{"455/2 cycles", DIMENSION_CYCLES, 455, 2},
+	{"6 pulses", DIMENSION_PULSES, 6, 1},
+	{"1 pulse", DIMENSION_PULSES, 1, 1},
 	{"009 dots", DIMENSION_DOTS, 9, 1},
 	{"1 cell", DIMENSION_CELLS, 1, 1},
 	{"3 cells", DIMENSION_CELLS, 3, 1},
@@ -153,6 +156,8 @@ static void names_units(void **state)
 	assert_units(DIMENSION_CELLS, (const char *const[]){"cells"}, 1);
 	assert_units(DIMENSION_LINES, (const char *const[]){"lines"}, 1);
 	assert_units(DIMENSION_BITS, (const char *const[]){"bits"}, 1);
+	assert_units(DIMENSION_CYCLES, (const char *const[]){"cycles"}, 1);
+	assert_units(DIMENSION_PULSES, (const char *const[]){"pulses"}, 1);
 	assert_units(DIMENSION_PPM, (const char *const[]){"ppm"}, 1);
 }
 
