@@ -13,7 +13,7 @@ struct machine *machine_create(struct arena *arena, const struct wiring *wiring,
 		return NULL;
 	machine->wiring = *wiring;
 	machine->at = feedback_of(wiring);
-	machine->state_mask = ((uint32_t)1 << wiring->line.state_bits) - 1;
+	machine->state_mask = low_bits(wiring->line.state_bits);
 	for (size_t chip = 0; chip < wiring->chip_count; chip++)
 		chip_reader_init(&machine->readers[chip], wiring, chip, &images[chip], bank);
 	if (wiring->form == FORM_LOOP)

@@ -26,7 +26,7 @@ static bool read_rows(struct arena *arena, const struct machine *machine, enum s
 {
 	const struct stage_wiring *wired = wiring_stage(&machine->wiring, stage);
 	const size_t addresses = (size_t)1 << wired->address_bits;
-	*table = (struct stage_table){.state_mask = ((uint32_t)1 << wired->state_bits) - 1, .advance = wired->advance,
+	*table = (struct stage_table){.state_mask = low_bits(wired->state_bits), .advance = wired->advance,
 	                              .at_once = clears_at_once(wired)};
 	table->rows = arena_array(arena, addresses, sizeof *table->rows);
 	for (size_t address = 0; table->rows != NULL && address < addresses; address++) {
@@ -45,7 +45,7 @@ struct two_stages *two_stages_create(struct arena *arena, const struct machine *
 		return NULL;
 	two->at = machine->at;
 	two->line_bits = machine->wiring.line.state_bits;
-	two->kind_mask = ((uint32_t)1 << two->at.kind_bits) - 1;
+	two->kind_mask = low_bits(two->at.kind_bits);
 	two->kinds = arena_array(arena, (size_t)1 << machine->wiring.frame.address_bits, sizeof *two->kinds);
 	if (two->kinds == NULL || !read_rows(arena, machine, STAGE_LINE, &two->line, NULL) ||
 	    !read_rows(arena, machine, STAGE_FRAME, &two->frame, two->kinds))
@@ -78,7 +78,7 @@ uint32_t two_stages_settle(const struct two_stages *two, uint32_t state)
 	uint32_t frame_state = state >> two->at.frame;
 	if (two->frame.at_once && (two->frame.rows[frame_state] & CLEARS) != 0) {
 		frame_state = 0;
-		state &= ((uint32_t)1 << two->at.frame) - 1;
+		state &= low_bits(two->at.frame);
 	}
 	if (two->line.at_once && (line_row(two, state & line_mask, kind_at(two, state, frame_state)) & CLEARS) != 0)
 		state &= ~line_mask;
@@ -104,7 +104,7 @@ uint32_t two_stages_passing(const struct two_stages *two, uint32_t state)
 	const uint32_t row = line_row(two, line_state, kind_at(two, state, frame_state));
 	const bool steps = at->has_step ? (state >> at->step & 1) != 0 : (row & STEPS) != 0;
 	uint32_t next = steps ? advanced(&two->frame, frame_state, two->frame.rows[frame_state]) << at->frame
-	                      : state & ~(((uint32_t)1 << at->frame) - 1);
+	                      : state & ~(low_bits(at->frame));
 	if (at->kind_bits > 0)
 		next |= steps ? two->kinds[frame_state] << at->kind : state & two->kind_mask << at->kind;
 	if (at->has_step && (row & STEPS) != 0)

@@ -64,11 +64,6 @@ static enum data_wire_kind next_kind(const struct trial *trial, enum stage stage
 	return wiring_stage(&trial->wiring, stage)->advance == ADVANCE_COUNT ? DATA_CLEAR : DATA_NEXT;
 }
 
-static uint32_t low_bits(unsigned bits)
-{
-	return (uint32_t)(((uint64_t)1 << bits) - 1);
-}
-
 // The row that decides where a stage goes from a state on. An asynchronous clear is read in the row that the counter passes
 // through afterwards: that of the line stage under the kind that then follows.
 static void find_next_row(const struct trial *trial, enum stage stage, uint32_t state, struct counterexample *found)

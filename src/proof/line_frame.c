@@ -7,11 +7,6 @@
 // Starts of lines that are tried, should a fault let lines start differently.
 #define MOST_STARTS 8u
 
-static uint32_t low_bits(unsigned bits)
-{
-	return (uint32_t)(((uint64_t)1 << bits) - 1);
-}
-
 // Whether the line stage's state is the number of the cell.
 static bool numbers_cells(const struct trial *trial)
 {

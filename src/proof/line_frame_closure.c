@@ -44,7 +44,7 @@ static bool never_loads(const struct trial *trial, uint32_t cell)
 
 static struct counterexample line_fault(const struct trial *trial, uint32_t cell, uint32_t state, uint32_t planned)
 {
-	const uint32_t mask = ((uint32_t)1 << trial->wiring.line.state_bits) - 1;
+	const uint32_t mask = low_bits(trial->wiring.line.state_bits);
 	struct counterexample found = blame_next(trial, cell, (state ^ planned) & mask);
 	found.what = number_words(trial, &found, "H", state & mask, planned & mask);
 	return found;
@@ -66,7 +66,7 @@ static struct counterexample find_departure(const struct trial *trial)
 	const struct timeline *timeline = trial->timeline;
 	const struct lap *lap = &trial->lap;
 	const uint32_t frame_bits = trial->numbered_bits >> trial->at.frame << trial->at.frame;
-	const uint32_t line_mask = ((uint32_t)1 << trial->wiring.line.state_bits) - 1;
+	const uint32_t line_mask = low_bits(trial->wiring.line.state_bits);
 	for (uint32_t line = 0, cell = 0; line < timeline->line_count; line++) {
 		const uint32_t end = timeline->lines[line].first_cell + timeline->types[timeline->lines[line].type].cells;
 		for (; cell < end; cell++) {

@@ -117,7 +117,7 @@ static bool blame_repeat(const struct line_rows *rows, struct counterexample *fo
 bool find_line_jump(const struct trial *trial, uint32_t wrong_at, struct counterexample *found, bool *certain)
 {
 	const struct timeline *timeline = trial->timeline;
-	const uint32_t mask = ((uint32_t)1 << trial->wiring.line.state_bits) - 1;
+	const uint32_t mask = low_bits(trial->wiring.line.state_bits);
 	const bool latched = trial->wiring.line.outputs == OUTPUTS_REGISTERED;
 	*certain = (trial->numbered_bits & mask) != 0;
 	if (*certain || wrong_at == 0)

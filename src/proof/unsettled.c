@@ -92,7 +92,7 @@ static void note_passing(struct trial *trial, enum stage stage, uint32_t from, u
 static void find_passing(struct trial *trial)
 {
 	const struct lap *lap = &trial->lap;
-	const uint32_t line_mask = ((uint32_t)1 << trial->wiring.line.state_bits) - 1;
+	const uint32_t line_mask = low_bits(trial->wiring.line.state_bits);
 	for (uint32_t cell = 0; cell < trial->timeline->cell_count; cell++) {
 		const uint32_t from = lap->states[cell], passing = machine_passing(trial->machine, from);
 		const uint32_t to = cell + 1 < trial->timeline->cell_count ? lap->states[cell + 1] : lap->state_after;

@@ -46,6 +46,12 @@ struct feedback {
 // Cannot fail.
 struct feedback feedback_of(const struct wiring *wiring);
 
+// A mask of so many lowest bits, at most 32. Cannot fail.
+static inline uint32_t low_bits(unsigned bits)
+{
+	return (uint32_t)(((uint64_t)1 << bits) - 1);
+}
+
 // One of the stages. Cannot fail.
 static inline const struct stage_wiring *wiring_stage(const struct wiring *wiring, enum stage stage)
 {

@@ -67,7 +67,7 @@ static const struct plan *plan_of(const struct proofs *proofs)
 static void append_starts(json_t **start, const struct proofs *proofs, uint32_t bank)
 {
 	const struct wiring wiring = wiring_of(plan_of(proofs));
-	const uint32_t state = proofs->closure.start_state, mask = (uint32_t)(((uint64_t)1 << wiring.line.state_bits) - 1);
+	const uint32_t state = proofs->closure.start_state, mask = low_bits(wiring.line.state_bits);
 	if (wiring.form == FORM_LOOP) {
 		append_start(start, bank, "loop", state);
 		return;

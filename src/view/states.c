@@ -31,7 +31,7 @@ static bool is_loop(const struct proofs *proofs)
 
 static uint32_t part_value(const struct part_view *part, uint32_t state)
 {
-	return state >> part->low & (uint32_t)(((uint64_t)1 << part->bits) - 1);
+	return state >> part->low & low_bits(part->bits);
 }
 
 // Codes of kinds are short numbers; states are shown in hexadecimal.
@@ -71,7 +71,7 @@ void put_row_state(struct text *out, const struct proofs *proofs, enum stage sta
 	}
 	list_parts(proofs, parts);
 	const struct part_view *part = &parts[stage == STAGE_LINE ? 0 : PARTS - 1];
-	put_part(out, part, address & (uint32_t)(((uint64_t)1 << part->bits) - 1));
+	put_part(out, part, address & low_bits(part->bits));
 	if (stage == STAGE_LINE && machine->kind_bits > 0)
 		text_printf(out, " of kind %" PRIu32, address >> machine->line.state_bits);
 }
@@ -118,7 +118,7 @@ void json_put_row_state(json_t **object, const struct proofs *proofs, enum stage
 	const unsigned bits = machine_stage(machine, stage)->state_bits;
 	if (!is_loop(proofs))
 		json_put(object, "stage", json_string(stage_name(stage)));
-	json_put(object, "state", json_integer(address & (uint32_t)(((uint64_t)1 << bits) - 1)));
+	json_put(object, "state", json_integer(address & low_bits(bits)));
 	if (!is_loop(proofs) && stage == STAGE_LINE)
 		json_put(object, "kind", json_integer(address >> bits));
 }
