@@ -70,10 +70,12 @@ int usage_error(const char *command, const char *format, ...)
 
 bool colour_on(enum colour_choice choice, int descriptor)
 {
-	const char *no_colour = getenv("NO_COLOR");
+	const char *no_colour = getenv("NO_COLOR"), *terminal = getenv("TERM");
 	if (choice != COLOUR_AUTO)
 		return choice == COLOUR_ALWAYS;
-	return (no_colour == NULL || no_colour[0] == '\0') && isatty(descriptor) == 1;
+	if ((no_colour != NULL && no_colour[0] != '\0') || (terminal != NULL && strcmp(terminal, "dumb") == 0))
+		return false;
+	return isatty(descriptor) == 1;
 }
 
 int memory_error(void)

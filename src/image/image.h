@@ -19,8 +19,8 @@ struct image {
 bool images_fill(const struct table *const *tables, uint32_t bank_count, struct arena *arena, struct image *images);
 
 // True if what the chip answers depends on an address pin to which nothing is wired: *pin is the first such pin, *offset the first byte of the
-// image, with that pin low, that differs with it high. Cannot fail.
-bool image_reads_open_pin(const struct chip *chip, const struct image *image, unsigned *pin, size_t *offset);
+// image, with that pin low, that differs with it high, and *count how many do. Cannot fail.
+bool image_reads_open_pin(const struct chip *chip, const struct image *image, unsigned *pin, size_t *offset, size_t *count);
 
 // CRC-32 and 16-bit sum (sum of all bytes mod 65536). Cannot fail.
 uint32_t image_crc32(const struct image *image);

@@ -160,11 +160,16 @@ static bool keep_image(scanlatch_images *images, size_t chip, const struct image
 static void notice_open_pin(const struct chip *chip, const struct image *image, struct place place, struct diagnostics *diagnostics)
 {
 	unsigned pin;
-	size_t offset;
-	if (!image_reads_open_pin(chip, image, &pin, &offset))
+	size_t offset, count;
+	if (!image_reads_open_pin(chip, image, &pin, &offset, &count))
 		return;
-	diagnose(diagnostics, RULE_IMAGE_OPEN_PIN, place, "chip \"%s\" answers differently while its open pin A%u is high, first for the byte at 0x%zX",
-	         chip->label, pin, offset);
+	diagnose(diagnostics, RULE_IMAGE_OPEN_PIN, place, "chip \"%s\" answers differently while its open pin A%u is high, %s the byte at 0x%zX",
+	         chip->label, pin, count == 1 ? "but only for" : "first for", offset);
+	if (count == 1) {
+		diagnose_hint(diagnostics, "that byte, or its twin at 0x%zX, may be damaged; the proofs hold for A%u low",
+		              offset + ((size_t)1 << pin) * (chip->part->data_pins / 8), pin);
+		return;
+	}
 	diagnose_hint(diagnostics, "the proofs hold for A%u low: tie it low on the board", pin);
 }
 

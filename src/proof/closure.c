@@ -6,6 +6,9 @@
 #include "proof/exchange.h"
 #include "proof/jump.h"
 
+// Of the frame, in which a machine with exchanged chips must have gone wrong.
+#define FIRST_CELLS 256u
+
 // `bytes`: the bytes that hold the next state, in words: " (…)", or nothing.
 static const char *back_too_early(const struct trial *trial, const char *bytes)
 {
@@ -190,6 +193,9 @@ static bool stages_fail(struct trial *trial, struct line_fault *line, uint32_t w
 		return line_fails(trial, line, wrong_before);
 	if (!trial->departure_certain && wrong_before < trial->departed_cell)
 		blame_other_proof(trial, PROOF_SIGNALS, &found);
+	// Exchanged chips, and those of another plan, go wrong at once.
+	if (trial->departed_cell <= FIRST_CELLS && !find_exchange(trial, &found.hint))
+		return false;
 	return proof_fails(trial, PROOF_CLOSURE, found);
 }
 

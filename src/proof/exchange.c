@@ -3,6 +3,7 @@
 #include "base/arena.h"
 #include "catalogue/catalogue.h"
 #include "proof/frame_find.h"
+#include "proof/line_frame.h"
 
 // Of so many first cells no more than a few may be wrong, else the images are taken for those of another plan.
 #define FIRST_CELLS 64u
@@ -10,6 +11,8 @@
 
 // States that the searches for a start may look at, in all.
 #define SEARCHED_STATES ((size_t)1 << 25)
+// Cells of line-frame machines that may be run.
+#define SEARCHED_CELLS ((uint64_t)1 << 24)
 
 static bool is_wrong(const struct trial *trial, uint32_t cell)
 {
@@ -60,6 +63,16 @@ static bool lap_is_right(struct trial *trial, uint32_t start, bool *right)
 	return true;
 }
 
+// The same for a line-frame machine, whose start follows from its rows.
+static bool stages_are_right(struct trial *other, const struct trial *trial, bool *right)
+{
+	const uint32_t line_start = trial->start & low_bits(trial->wiring.line.state_bits);
+	if (!lap_run(other, line_frame_start(other, trial->has_start, line_start)) || !lap_finish(other))
+		return false;
+	*right = other->lap.closed && !other->departure.present && signals_first_cell(other) == UINT32_MAX;
+	return true;
+}
+
 static bool try_pair(const struct trial *trial, struct arena *arena, size_t left, size_t right_chip, bool search, bool *right)
 {
 	const size_t chips = trial->wiring.chip_count;
@@ -79,6 +92,8 @@ static bool try_pair(const struct trial *trial, struct arena *arena, size_t left
 	other.decoders = decoders_create(arena, trial->timeline->plan);
 	if (other.machine == NULL || other.decoders == NULL)
 		return false;
+	if (trial->wiring.form == FORM_LINE_FRAME)
+		return stages_are_right(&other, trial, right);
 	if (search && !frame_find(arena, trial->timeline, &trial->wiring, other.machine, trial->expected, other.decoders, &start))
 		return false;
 	return lap_is_right(&other, start, right);
@@ -105,8 +120,8 @@ bool find_exchange(const struct trial *trial, const char **hint)
 	const bool search = !trial->has_start && count_pairs(trial) <= SEARCHED_STATES >> trial->wiring.line.state_bits;
 	bool tried = true, right_lap = false;
 	*hint = NULL;
-	if (trial->wiring.form == FORM_LINE_FRAME)
-		return true; // their laps are not tried
+	if (trial->wiring.form == FORM_LINE_FRAME && (uint64_t)count_pairs(trial) * trial->timeline->cell_count > SEARCHED_CELLS)
+		return true;
 	for (size_t right = 1; tried && right < trial->wiring.chip_count; right++) {
 		for (size_t left = 0; tried && left < right; left++) {
 			if (!may_exchange(trial, left, right))

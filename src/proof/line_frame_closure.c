@@ -5,13 +5,16 @@
 #include "proof/line_frame.h"
 #include "proof/line_jump.h"
 
+// As wide as the stage's state everywhere else.
 static const char *number_words(const struct trial *trial, const struct counterexample *found, const char *name, uint32_t number,
                                 uint32_t expected)
 {
+	const int digits = (int)(wiring_stage(&trial->wiring, found->stage)->state_bits + 3) / 4;
 	const char *bytes = next_bytes(trial, found->stage, found->state);
 	if (bytes == NULL)
 		return NULL;
-	return arena_format(trial->proofs->arena, "the next %s is 0x%" PRIX32 " (%s), expected 0x%" PRIX32, name, number, bytes, expected);
+	return arena_format(trial->proofs->arena, "the next %s is 0x%0*" PRIX32 " (%s), expected 0x%0*" PRIX32, name, digits, number, bytes,
+	                    digits, expected);
 }
 
 // Step is asserted where it should not be, or the other way round.

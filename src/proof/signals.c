@@ -180,6 +180,28 @@ static struct counterexample first_fault(const struct trial *trial, uint32_t cel
 	return found;
 }
 
+#define FEW_CELLS 8u
+
+// How many cells show something else than planned, each state counted once.
+static uint32_t count_wrong_cells(const struct trial *trial)
+{
+	uint32_t count = 0;
+	for (uint32_t cell = 0; cell < trial->lap.return_cells; cell++)
+		count += trial->lap.pins[cell] != trial->expected[cell] || wrong_held_bits(trial, cell, trial->lap.states[cell]) != 0;
+	return count;
+}
+
+// More wrong cells than a byte or two would make, in a frame that closes, are another plan's. NULL if there are few, or memory is out.
+static const char *other_plan_hint(const struct trial *trial)
+{
+	const bool counts = trial->wiring.form == FORM_LOOP && trial->lap.closed; // a row of a line stage shows in many lines
+	const uint32_t wrong = counts ? count_wrong_cells(trial) : 0;
+	if (wrong <= FEW_CELLS)
+		return NULL;
+	return arena_format(trial->proofs->arena, "%" PRIu32 " states show something else than planned: are these images of this "
+	                    "plan? compare the CRC-32 in its manifest", wrong);
+}
+
 bool prove_signals(struct trial *trial)
 {
 	struct signals_result *result = &trial->proofs->signals;
@@ -189,5 +211,8 @@ bool prove_signals(struct trial *trial)
 	const uint32_t cell = signals_first_cell(trial);
 	if (cell == UINT32_MAX && first_unsure_pin(trial) == UINT32_MAX)
 		return true;
-	return proof_fails(trial, PROOF_SIGNALS, first_fault(trial, cell));
+	struct counterexample found = first_fault(trial, cell);
+	if (found.hint == NULL)
+		found.hint = other_plan_hint(trial);
+	return proof_fails(trial, PROOF_SIGNALS, found);
 }

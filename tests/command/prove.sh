@@ -153,4 +153,19 @@ prove 1 scrambled.yaml U1=bin/scrambled.U2.bin U2=bin/scrambled.U1.bin
 # Another plan's images.
 prove 1 lock-gate-sign.yaml U3=blank32 U4=images/lock-gate-sign.U4.bin
 
+# Two chips of a two-stage board in each other's sockets, of one stage and of two.
+"$SCANLATCH" build "$OLDPWD/plans/mooring-board.yaml" --format bin -o mooring >stdout 2>stderr
+for pair in 'rom0 rom1' 'rom2 rom3' 'rom1 rom2'; do
+	read -r left right <<<"$pair"
+	chips=()
+	for chip in rom0 rom1 rom2 rom3; do
+		from=$chip
+		[ "$chip" != "$left" ] || from=$right
+		[ "$chip" != "$right" ] || from=$left
+		chips+=("$chip=mooring/mooring-board.$from.bin")
+	done
+	"$SCANLATCH" prove "$OLDPWD/plans/mooring-board.yaml" "${chips[@]}" >stdout 2>stderr
+	same "$pair exchanged: exit status" 1 $?
+	holds "$pair exchanged: said" grep -q "^      hint: with $left and $right exchanged the frame closes as planned" stdout
+done
 finish

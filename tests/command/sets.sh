@@ -111,5 +111,11 @@ sed 's/2: long.yaml/2: pipe.yaml/' jetty.yaml >piped.yaml
 timeout 10 "$SCANLATCH" check piped.yaml >stdout 2>stderr
 same 'a pipe for a plan: exit status' 2 $?
 holds 'a pipe for a plan: said' grep -q 'bank 2: "pipe.yaml" is no ordinary file \[bank-plan\]' stderr
+# Banks in the wrong order: each has the other's rows.
+sed 's/0: short/0: xxx/; s/2: long/2: short/; s/0: xxx/0: long/' jetty.yaml >exchanged.yaml
+"$SCANLATCH" prove exchanged.yaml rom0=out/jetty.rom0.bin >stdout 2>stderr
+same 'banks exchanged: exit status' 1 $?
+holds 'banks exchanged: said of the first' grep -q '^      hint: this bank holds the rows of "short": are banks exchanged?' stdout
+holds 'banks exchanged: said of the second' grep -q '^      hint: this bank holds the rows of "long": are banks exchanged?' stdout
 same 'banks in ranges' 'banks 0, 1 and 3 to 255: short (short.yaml)' "$("$SCANLATCH" check wide.yaml | grep '^banks')"
 finish

@@ -25,8 +25,8 @@ static void assert_reads(const struct part *part, unsigned open, uint8_t bytes[8
 	const struct chip chip = chip_of(part, open);
 	const struct image image = {bytes, 8};
 	unsigned pin = 77;
-	size_t offset = 77;
-	assert_true(image_reads_open_pin(&chip, &image, &pin, &offset));
+	size_t offset = 77, count = 77;
+	assert_true(image_reads_open_pin(&chip, &image, &pin, &offset, &count));
 	assert_int_equal(pin, expected_pin);
 	assert_int_equal(offset, expected_offset);
 }
@@ -36,10 +36,11 @@ static void assert_reads_none(const struct part *part, unsigned open, uint8_t by
 	const struct chip chip = chip_of(part, open);
 	const struct image image = {bytes, 8};
 	unsigned pin = 77;
-	size_t offset = 77;
-	assert_false(image_reads_open_pin(&chip, &image, &pin, &offset));
+	size_t offset = 77, count = 77;
+	assert_false(image_reads_open_pin(&chip, &image, &pin, &offset, &count));
 	assert_int_equal(pin, 77);
 	assert_int_equal(offset, 77);
+	assert_int_equal(count, 77);
 }
 
 // A0 open: bytes 0 and 1 are alike, 2 and 3 are not.
@@ -74,8 +75,8 @@ static void of_several_pins(void **state)
 	chip.address[1].kind = ADDRESS_HIGH;
 	chip.address[2].kind = ADDRESS_BANK;
 	unsigned pin;
-	size_t offset;
-	assert_false(image_reads_open_pin(&chip, &(struct image){(uint8_t[]){1, 2, 3, 4, 5, 6, 7, 8}, 8}, &pin, &offset));
+	size_t offset, count;
+	assert_false(image_reads_open_pin(&chip, &(struct image){(uint8_t[]){1, 2, 3, 4, 5, 6, 7, 8}, 8}, &pin, &offset, &count));
 }
 
 // Two bytes at each address: A0 is the words at 0 and 2, 4 and 6; the high byte of the second pair differs.
