@@ -22,6 +22,8 @@ enum {
 	PLAN_CHIPS,
 	PLAN_TIMING,
 	PLAN_SWEEP,
+	PLAN_BANK,
+	PLAN_BANKS,
 	PLAN_KEYS
 };
 
@@ -30,8 +32,13 @@ static const struct key plan_keys[PLAN_KEYS] = {
 	[PLAN_STANDARD] = {"standard", KEY_LATER},    [PLAN_GRADE] = {"grade", KEY_LATER},      [PLAN_CLOCK] = {"clock", KEY_REQUIRED},
 	[PLAN_SIGNALS] = {"signals", KEY_REQUIRED},   [PLAN_LINES] = {"lines", KEY_REQUIRED},   [PLAN_FRAME] = {"frame", KEY_REQUIRED},
 	[PLAN_MACHINE] = {"machine", KEY_REQUIRED},   [PLAN_PARTS] = {"parts", KEY_OPTIONAL},   [PLAN_CHIPS] = {"chips", KEY_REQUIRED},
-	[PLAN_TIMING] = {"timing", KEY_OPTIONAL},     [PLAN_SWEEP] = {"sweep", KEY_OPTIONAL},
+	[PLAN_TIMING] = {"timing", KEY_OPTIONAL},     [PLAN_SWEEP] = {"sweep", KEY_OPTIONAL},   [PLAN_BANK] = {"bank", KEY_ELSEWHERE},
+	[PLAN_BANKS] = {"banks", KEY_ELSEWHERE},
 };
+
+#define OF_A_SET "that is of a set, which begins with scanlatch-set: 1"
+
+static const struct stray_key set_strays[] = {{"bank", OF_A_SET}, {"banks", OF_A_SET}};
 
 // Longest name of a plan or set: with a label and an ending it must still make a file name.
 #define STEM_CHARACTERS 100
@@ -109,6 +116,7 @@ static void read_root(struct reader *reader, const struct node *root)
 	const struct node *values[PLAN_KEYS];
 	if (refuse_set(reader, root) || !read_mapping(reader, root, "a plan", plan_keys, PLAN_KEYS, values))
 		return;
+	report_elsewhere(reader, root, "a plan", set_strays, COUNT_OF(set_strays));
 	hint_board(reader, root, values);
 	if (values[PLAN_VERSION] != NULL)
 		read_version(reader, values[PLAN_VERSION], "scanlatch");
