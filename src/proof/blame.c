@@ -210,6 +210,32 @@ static uint32_t state_to_blame(const struct trial *trial, uint32_t state, bool *
 	return state;
 }
 
+// The rows of the line stage that the frame reads; in the trial's arena, a byte each. NULL when memory is out.
+static const uint8_t *frame_rows(const struct trial *trial)
+{
+	uint8_t *rows = arena_array(trial->arena, (size_t)1 << trial->wiring.line.address_bits, sizeof *rows);
+	for (uint32_t cell = 0; rows != NULL && cell < trial->timeline->cell_count; cell++)
+		rows[machine_row_address(trial->machine, STAGE_LINE, trial->lap.states[cell])] = 1;
+	return rows;
+}
+
+// Whether a loop that never steps is of rows that the frame has none of, though it has lines of their kind: spare rows, which should
+// lead home. Of a kind that the frame does not have, rows should step.
+static bool is_spare_loop(const struct trial *trial, uint32_t state)
+{
+	const uint8_t *rows = frame_rows(trial);
+	const uint32_t states = low_bits(trial->wiring.line.state_bits), kind = machine_row_address(trial->machine, STAGE_LINE, state) & ~states;
+	bool has_kind = false, spare = rows != NULL;
+	for (uint32_t line_state = 0; spare && line_state <= states; line_state++)
+		has_kind = has_kind || rows[kind | line_state] != 0;
+	uint32_t at = state;
+	do {
+		spare = spare && rows[machine_row_address(trial->machine, STAGE_LINE, at)] == 0;
+		at = machine_next(trial->machine, at);
+	} while (at != state && spare);
+	return spare && has_kind;
+}
+
 // A loop that keeps to one line: step is never asserted. Any of its rows should.
 static struct counterexample blame_missing_step(const struct trial *trial, uint32_t state, struct counterexample found)
 {
@@ -238,7 +264,7 @@ struct counterexample blame_loop(const struct trial *trial, uint32_t state)
 	const bool two = trial->wiring.form == FORM_LINE_FRAME;
 	bool steps = true;
 	const uint32_t blamed = two ? state_to_blame(trial, state, &steps) : state;
-	if (!steps)
+	if (!steps && !is_spare_loop(trial, state))
 		return blame_missing_step(trial, blamed, found);
 	if (two && blamed >> trial->at.frame >= trial->timeline->line_count)
 		return blame_next_line(trial, blamed, found);

@@ -149,7 +149,8 @@ static struct line_fault find_line_fault(const struct trial *trial)
 		return fault;
 	fault.found = line_fault(trial, line);
 	const uint32_t cell = lap_stretch_cell(trial, fault.found.cell);
-	if (cell >= first_judged_cell(trial))
+	const int stretch = trial->timeline->plan->role_signal[ROLE_STRETCH];
+	if (cell >= first_judged_cell(trial) && (sure_pins(trial, cell) >> stretch & 1) != 0)
 		fault.shown_at = cell;
 	return fault;
 }
@@ -187,6 +188,8 @@ static bool line_fails(struct trial *trial, struct line_fault *line, uint32_t wr
 static bool stages_fail(struct trial *trial, struct line_fault *line, uint32_t wrong_before)
 {
 	struct counterexample found = trial->departure;
+	if (!found.present && !trial->lap.closed)
+		return loop_fails(trial, line, wrong_before);
 	if (!found.present)
 		return !line->found.present || line_fails(trial, line, wrong_before);
 	if (line->shown_at < trial->departed_cell)

@@ -42,6 +42,15 @@ static inline bool decoder_asserts(const struct decoder *decoder, uint32_t code)
 	return decoder->members[code / 64] >> code % 64 & 1;
 }
 
+// The signals whose codes are known. Cannot fail.
+static inline uint64_t decoders_known(const struct decoders *decoders)
+{
+	uint64_t known = 0;
+	for (size_t index = 0; index < decoders->count; index++)
+		known |= (uint64_t)decoders->list[index].known << decoders->list[index].signal;
+	return known;
+}
+
 // The signals that known decoders assert in a state. Cannot fail.
 uint64_t decoders_pins(const struct decoders *decoders, uint32_t state);
 

@@ -34,9 +34,7 @@ static bool passes(const struct trial *trial, uint32_t start)
 	const uint32_t cells = trial->timeline->cell_count;
 	const uint64_t inverted = levels_of(trial->timeline->plan, 0), data = trial->wiring.line.data_signals;
 	const bool registered = trial->wiring.line.outputs == OUTPUTS_REGISTERED;
-	uint64_t known = 0;
-	for (size_t index = 0; index < trial->decoders->count; index++)
-		known |= (uint64_t)trial->decoders->list[index].known << trial->decoders->list[index].signal;
+	const uint64_t known = decoders_known(trial->decoders);
 	const uint32_t first = machine_settle(trial->machine, start);
 	uint32_t state = first;
 	for (uint32_t cell = 0; cell < cells; cell++) {
@@ -136,7 +134,8 @@ bool find_exchange(const struct trial *trial, const char **hint)
 			return *hint != NULL;
 		}
 	}
-	if (tried && many_wrong_cells(trial))
+	const bool at_once = trial->wiring.form == FORM_LOOP || trial->departed_cell <= FEW_CELLS;
+	if (tried && at_once && many_wrong_cells(trial))
 		*hint = "are these images of this plan? compare the CRC-32 in its manifest";
 	return tried;
 }

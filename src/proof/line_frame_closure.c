@@ -89,19 +89,21 @@ static struct counterexample find_departure(const struct trial *trial)
 	return lap->state_after != lap->states[0] ? end_fault(trial) : (struct counterexample){.present = false};
 }
 
-// The first cell with a held bit or a data pin wrong; UINT32_MAX if there is none. The latched pins of cell 0 come from the
+// The first cell with a held bit, a data pin or a pin of known codes wrong; UINT32_MAX if there is none. The latched pins of cell 0 come from the
 // last cell, and count as wrong after it.
 static uint32_t first_wrong_cell(const struct trial *trial)
 {
 	const uint64_t data = trial->wiring.line.data_signals | trial->wiring.frame.data_signals;
 	const uint32_t cells = trial->timeline->cell_count;
 	const bool latched = trial->wiring.line.outputs == OUTPUTS_REGISTERED;
+	const uint64_t known = decoders_known(trial->decoders);
 	bool at_end = false;
 	for (uint32_t cell = 0; cell < cells; cell++) {
+		const uint64_t decoded = (decoders_pins(trial->decoders, trial->lap.states[cell]) ^ trial->expected[cell]) & known;
 		const uint64_t wrong = (trial->lap.pins[cell] ^ trial->expected[cell]) & data & sure_pins(trial, cell);
 		const bool held = wrong_held_bits(trial, cell, trial->lap.states[cell]) != 0;
 		at_end = at_end || (cell == 0 && latched && wrong != 0);
-		if (held || (wrong != 0 && !(cell == 0 && latched)))
+		if (held || decoded != 0 || (wrong != 0 && !(cell == 0 && latched)))
 			return cell;
 	}
 	return at_end ? cells : UINT32_MAX;

@@ -69,6 +69,12 @@ static void add_stage(const struct trial *trial, enum stage stage, unsigned kind
 	if (clears)
 		add_pass(trial, stage, 1u << DATA_CLEAR, delay, result);
 	add_pass(trial, stage, kinds, delay || clears, result);
+	if (!clears)
+		return;
+	// Once cleared, the counter alone moves: the kind has been there.
+	struct speed_pass *cleared = &result->passes[result->pass_count - 1];
+	cleared->counter = true;
+	cleared->delay_s = trial->timeline->plan->timing.counter_delay_s[stage];
 }
 
 // Sums up. False if a figure does not fit 64 bits.

@@ -130,8 +130,8 @@ static void trapped_in_a_spare_h(void **test)
 	row.next = 5;
 	burn_line(hand, QUIET, 5, row);
 	struct proofs *proofs = prove_pier(hand);
-	assert_string_equal(lost(proofs, 1)->what, "state H 0x5, V 0x2 is on a second loop of 1 cell: no row of it asserts step, expected one that "
-	                                           "does, so that the line ends");
+	assert_string_equal(lost(proofs, 1)->what, "state H 0x5, V 0x2 is on a second loop of 1 cell: its next state is H 0x5, V 0x2 (line 0x000D: "
+	                                           "0xF5), expected one that leads to the frame, such as its first, H 0x0, V 0x0");
 	assert_row(lost(proofs, 1), STAGE_LINE, 13, 0xF5);
 	end(hand, proofs);
 	// With step, it ends its line in the wrong H: of kind 0 and 1 alike, it keeps all lines to one cell.
