@@ -41,6 +41,14 @@ case_names() {
 	done | sort -u
 }
 
+# hide_sizes FOLDER: a manifest grows with every figure that is added; in $work/stdout its size reads N, if it is the file's.
+hide_sizes() {
+	local path size
+	while read -r path size; do
+		[ "$(stat -c %s "$1/$path" 2>/dev/null)" != "$size" ] || sed -i "s|$path ($size bytes)\$|$path (N bytes)|" "$work/stdout"
+	done < <(sed -En 's/^(wrote|kept ) (.*\.manifest\.json) \(([0-9]+) bytes\)$/\2 \3/p' "$work/stdout")
+}
+
 # run_program FOLDER ARGUMENT …: runs the program there, fills $work/stdout and $work/stderr, returns its status.
 run_program() {
 	local status
@@ -48,7 +56,7 @@ run_program() {
 	(cd "$1" && shift && timeout -k 5 120 "$SCANLATCH" "$@" >"$work/stdout" 2>"$work/stderr" </dev/null) 2>/dev/null
 	status=$?
 	sed -i "s|$work|WORK|g" "$work/stdout" "$work/stderr"
-	sed -Ei 's/(\.manifest\.json) \([0-9]+ bytes\)$/\1 (N bytes)/' "$work/stdout"
+	hide_sizes "$1"
 	return "$status"
 }
 
