@@ -1,0 +1,333 @@
+"""Measures a timeline for the items of src/catalogue/limit_items.c, from their definitions there and in standards.h alone.
+
+All is exact: ticks are whole, values fractions in seconds, hertz, lines, cycles and pulses. What the definitions leave open is
+decided here as follows:
+
+* Of the pulses of composite sync, a broad one is longer than a quarter of a line, an equalising one shorter than three quarters
+  of the usual sync, and any other is a line's sync. A line is the commonest distance of two pulses.
+* A normal line begins with a line's sync, and so does the pulse after it.
+* Lines are counted by pulses, half by half: a distance of two pulses is a whole number of half lines, the nearest.
+"""
+
+from bisect import bisect_left, bisect_right
+from collections import Counter
+from fractions import Fraction
+
+
+class Runs:
+	"""Runs of a timeline that goes round, numbered without end in both directions."""
+
+	def __init__(self, runs, ticks):
+		self.runs, self.ticks = runs, ticks
+		self.starts = [start for start, _ in runs]
+
+	def __len__(self):
+		return len(self.runs)
+
+	def shifted(self, number):
+		lap, place = divmod(number, len(self.runs))
+		return lap * self.ticks, self.runs[place]
+
+	def start(self, number):
+		laps, (start, _) = self.shifted(number)
+		return laps + start
+
+	def end(self, number):
+		laps, (_, end) = self.shifted(number)
+		return laps + end
+
+	def width(self, number):
+		return self.end(number) - self.start(number)
+
+	def last_from(self, tick):
+		"""The number of the last run that starts at the tick or before."""
+		lap, tick = divmod(tick, self.ticks)
+		return lap * len(self.runs) + bisect_right(self.starts, tick) - 1
+
+	def first_from(self, tick):
+		"""The number of the first run that starts at the tick or after."""
+		lap, tick = divmod(tick, self.ticks)
+		return lap * len(self.runs) + bisect_left(self.starts, tick)
+
+	def covers(self, tick):
+		return bool(self.runs) and tick < self.end(self.last_from(tick))
+
+
+def complement(runs):
+	"""The runs between the runs."""
+	if not len(runs):
+		return Runs([(0, runs.ticks)], runs.ticks)
+	between = [(runs.end(number), runs.start(number + 1)) for number in range(len(runs))]
+	return Runs(sorted((start % runs.ticks, start % runs.ticks + end - start) for start, end in between if end > start), runs.ticks)
+
+
+SYNC, EQUALISING, BROAD = "sync", "equalising", "broad"
+
+
+class Measurement:
+	def __init__(self, board, fields):
+		"""fields: of a frame, as the standard has it."""
+		timeline = board.timeline()
+		self.board, self.fields, self.ticks = board, fields, timeline.ticks
+		runs = {name: Runs(timeline.runs[name], timeline.ticks) for name in timeline.runs}
+		self.composite = "sync" in runs
+		self.pulses = runs["sync" if self.composite else "hsync"]
+		self.vertical = runs.get("vsync")
+		self.blank, self.burst = runs.get("blank"), runs.get("burst")
+		self.picture = complement(self.blank) if self.blank else None
+		self.classify()
+		self.find_fields()
+		self.values = {}
+
+	# ---- pulses, lines and fields
+
+	def classify(self):
+		pulses, count = self.pulses, len(self.pulses)
+		self.distances = [pulses.start(number + 1) - pulses.start(number) for number in range(count)]
+		self.line = Counter(self.distances).most_common(1)[0][0]
+		widths = [pulses.width(number) for number in range(count)]
+		usual = Counter(width for width in widths if 4 * width <= self.line).most_common(1)
+		self.kinds = [SYNC] * count
+		if self.composite:
+			self.kinds = [BROAD if 4 * width > self.line else EQUALISING if 4 * width < 3 * usual[0][0] else SYNC
+				for width in widths]
+		self.halves = [max(1, round(Fraction(2 * distance, self.line))) for distance in self.distances]
+		self.half_at = [0]
+		for halves in self.halves:
+			self.half_at.append(self.half_at[-1] + halves)
+
+	def kind(self, number):
+		return self.kinds[number % len(self.pulses)]
+
+	def half(self, number):
+		"""The place of a pulse in half lines."""
+		lap, place = divmod(number, len(self.pulses))
+		return lap * self.half_at[-1] + self.half_at[place]
+
+	def place(self, tick):
+		"""The place of a tick in half lines, exactly."""
+		number = self.pulses.last_from(tick)
+		since = Fraction(tick - self.pulses.start(number), self.pulses.start(number + 1) - self.pulses.start(number))
+		return self.half(number) + since * (self.half(number + 1) - self.half(number))
+
+	def find_fields(self):
+		"""0V of each field in a frame of the plan: ticks, and with composite sync the numbers of the first broad pulses."""
+		self.broad_first = [number for number in range(len(self.pulses))
+			if self.kind(number) == BROAD and self.kind(number - 1) != BROAD]
+		starts = [self.pulses.start(number) for number in self.broad_first] if self.composite else \
+			self.vertical.starts if self.vertical else []
+		self.zero = Runs([(start, start) for start in starts], self.ticks)
+
+	def whole_lines(self):
+		"""Numbers of the pulses at which normal lines begin."""
+		return [number for number in range(len(self.pulses)) if self.kind(number) == self.kind(number + 1) == SYNC]
+
+	# ---- items
+
+	def note(self, item, values):
+		values = list(values)
+		if values:
+			self.values[item] = (Fraction(min(values)), Fraction(max(values)))
+
+	def note_times(self, item, ticks):
+		self.note(item, [value / self.board.master for value in ticks])
+
+	def note_cycles(self, item, ticks):
+		if self.board.subcarrier:
+			self.note(item, [value * self.board.subcarrier / self.board.master for value in ticks])
+
+	def measure(self):
+		self.rates()
+		self.syncs()
+		self.bursts()
+		self.pictures()
+		self.vertical_pulses()
+		self.vertical_pictures()
+		self.lines_without_burst()
+		self.polarities()
+		return self.values
+
+	def rates(self):
+		board, pulses, zero = self.board, self.pulses, self.zero
+		lengths = [pulses.start(number + 1) - pulses.start(number) for number in self.whole_lines()]
+		self.note("line rate", [board.master / length for length in lengths])
+		self.note_cycles("subcarrier cycles per line", lengths)
+		self.note("pixel clock", [board.master / board.dot])
+		if board.subcarrier:
+			self.note("subcarrier", [board.subcarrier])
+		fields = range(len(zero))
+		self.note("field rate", [board.master / (zero.start(field + 1) - zero.start(field)) for field in fields])
+		self.note("frame rate", [board.master / (zero.start(field + self.fields) - zero.start(field)) for field in fields])
+		self.note("lines per field",
+			[(self.place(zero.start(field + 1)) - self.place(zero.start(field))) / 2 for field in fields])
+
+	def syncs(self):
+		self.note_times("horizontal sync width",
+			[self.pulses.width(number) for number in range(len(self.pulses)) if self.kind(number) == SYNC])
+
+	def bursts(self):
+		"""Of each burst in a line that begins with a line's sync."""
+		if not self.burst:
+			return
+		pulses, burst = self.pulses, self.burst
+		found = [(pulses.last_from(burst.start(number)), number) for number in range(len(burst))]
+		found = [(line, number) for line, number in found if self.kind(line) == SYNC]
+		starts = [burst.start(number) - pulses.start(line) for line, number in found]
+		lengths = [burst.width(number) for _, number in found]
+		self.note_times("breezeway", [burst.start(number) - pulses.end(line) for line, number in found])
+		self.note_times("burst start", starts)
+		self.note_cycles("burst start in cycles", starts)
+		self.note_times("burst length", lengths)
+		self.note_cycles("burst length in cycles", lengths)
+		pictures = dict(self.picture_starts()) if self.blank else {}
+		self.note_times("burst end to picture", [pictures[line % len(pulses)] - burst.end(number) % self.ticks
+			for line, number in found if line % len(pulses) in pictures])
+
+	def picture_starts(self):
+		"""(number, tick) of each line's sync and the end of its blanking, where it is in the first half of the line."""
+		for number in range(len(self.pulses)):
+			start = self.pulses.start(number)
+			if self.kind(number) == SYNC and self.blank.covers(start):
+				end = self.blank.end(self.blank.last_from(start))
+				if end < self.pulses.start(number + 1) and 2 * (end - start) < self.line:
+					yield number, end
+
+	def pictures(self):
+		if not self.blank:
+			return
+		pulses, blank = self.pulses, self.blank
+		starts = dict(self.picture_starts())
+		self.note_times("picture start", [end - pulses.start(number) for number, end in starts.items()])
+		self.note_times("back porch", [end - pulses.end(number) for number, end in starts.items()])
+		porches = {}
+		for number in range(len(pulses)):
+			start = pulses.start(number)
+			if self.kind(number) == SYNC and blank.covers(start):
+				begin = blank.start(blank.last_from(start))
+				if begin > pulses.start(number - 1):
+					porches[number] = start - begin
+		self.note_times("front porch", porches.values())
+		self.note_times("horizontal blanking",
+			[porches[number] + end - pulses.start(number) for number, end in starts.items() if number in porches])
+		# Pictures of whole lines.
+		whole = [(number, end) for number, end in starts.items() if self.halves[number] == 2]
+		widths = [blank.start(blank.first_from(end)) - end for _, end in whole]
+		self.note_times("picture width", widths)
+		self.note_times("horizontal centre",
+			[Fraction(2 * (end - pulses.start(number)) + width, 2) for (number, end), width in zip(whole, widths)])
+
+	def vertical_pulses(self):
+		pulses = self.pulses
+		count = range(len(pulses))
+		if not self.composite:
+			if self.vertical:
+				self.note("vertical sync length", [(self.place(self.vertical.end(number)) - self.place(self.vertical.start(number))) / 2
+					for number in range(len(self.vertical))])
+			return
+		self.note_times("equalising pulse width", [pulses.width(number) for number in count if self.kind(number) == EQUALISING])
+		broad = [number for number in count if self.kind(number) == BROAD]
+		self.note_times("broad pulse width", [pulses.width(number) for number in broad])
+		self.note_times("serration width", [pulses.start(number + 1) - pulses.end(number) for number in broad])
+		blocks = [self.block(first) for first in self.broad_first]
+		self.note("pre-equalising pulses", [zero - first for first, zero, _, _ in blocks])
+		self.note("pre-equalising lines", [Fraction(self.half(zero) - self.half(first), 2) for first, zero, _, _ in blocks])
+		self.note("broad pulses", [after - zero for _, zero, after, _ in blocks])
+		self.note("vertical sync length", [Fraction(self.half(after) - self.half(zero), 2) for _, zero, after, _ in blocks])
+		self.note("post-equalising pulses", [end - after for _, _, after, end in blocks])
+		self.note("post-equalising lines", [
+			Fraction(self.half(end - 1) + 1 - self.half(after), 2) if end > after else 0 for _, _, after, end in blocks])
+
+	def block(self, zero):
+		"""Numbers of the first equalising, the first broad, the next equalising pulse, and the one after the last of these."""
+		first, after = zero, zero
+		while self.kind(first - 1) == EQUALISING:
+			first -= 1
+		while self.kind(after) == BROAD:
+			after += 1
+		end = after
+		while self.kind(end) == EQUALISING:
+			end += 1
+		return first, zero, after, end
+
+	def shown(self):
+		"""For each half line of the frame whether it has picture: from the frame's first pulse on."""
+		halves = []
+		for number, count in enumerate(self.halves):
+			start, distance = self.pulses.start(number), self.distances[number]
+			edges = [start + Fraction(distance * part, count) for part in range(count + 1)]
+			halves += [self.has_picture(*pair) for pair in zip(edges, edges[1:])]
+		return halves
+
+	def has_picture(self, start, end):
+		number = self.picture.last_from(start)
+		return self.picture.end(number) > start or self.picture.start(number + 1) < end
+
+	def vertical_pictures(self):
+		if not self.blank or not len(self.zero) or not len(self.picture):
+			return
+		shown = self.shown()
+		found = {name: [] for name in ("front", "back", "blanking", "top", "height", "centre")}
+		for field in range(len(self.zero)):
+			here, there = self.place(self.zero.start(field)), self.place(self.zero.start(field + 1))
+			inside = [half for half in range(int(here), int(there)) if shown[half % len(shown)]]
+			first, end = inside[0], inside[-1] + 1
+			found["top"].append((first - here) / 2)
+			found["height"].append(Fraction(len(inside), 2))
+			found["blanking"].append((there - here - len(inside)) / 2)
+			found["centre"].append((Fraction(first + end, 2) - here) / 2)
+			found["front"].append((there - end) / 2)
+			found["back"].append((first - self.sync_end(field, here)) / 2)
+		for name, item in (("front", "vertical front porch"), ("back", "vertical back porch"), ("blanking", "vertical blanking"),
+				("top", "picture top"), ("height", "picture height"), ("centre", "vertical centre")):
+			self.note(item, found[name])
+
+	def sync_end(self, field, here):
+		if not self.composite:
+			return here + self.place(self.vertical.end(field)) - self.place(self.vertical.start(field))
+		zero = self.broad_first[field]
+		return self.half(self.block(zero)[2])
+
+	# ---- burst in the lines around 0V
+
+	def line_starts(self):
+		"""Numbers of the pulses at which lines begin, in an order that goes round: every second half line from the first 0V's on,
+		or from that half a line before it if line syncs are there."""
+		origin = self.half(self.broad_first[0])
+		syncs = Counter((self.half(number) - origin) % 2 for number in range(len(self.pulses)) if self.kind(number) == SYNC)
+		odd = syncs[1] > syncs[0]
+		return [number for number in range(len(self.pulses)) if (self.half(number) - origin) % 2 == odd]
+
+	def lines_without_burst(self):
+		"""Of the lines that surround a field's 0V without burst, and of further ones in the field."""
+		if not self.burst or not self.composite or not self.broad_first:
+			return
+		starts = self.line_starts()
+		edges = [self.pulses.start(number) for number in starts] + [self.pulses.start(starts[0]) + self.ticks]
+		quiet = [not self.has_burst(*pair) for pair in zip(edges, edges[1:])]
+		counts = Counter({field: 0 for field in range(len(self.zero))})
+		for line, is_quiet in enumerate(quiet):
+			if is_quiet:
+				counts[self.field_of(line, edges, quiet)] += 1
+		self.pauses = quiet
+		self.note("lines without burst", counts.values())
+
+	def has_burst(self, start, end):
+		number = self.burst.last_from(start)
+		return self.burst.end(number) > start or self.burst.start(number + 1) < end
+
+	def field_of(self, line, edges, quiet):
+		"""The field whose 0V is in the same run of lines without burst, or else the one that the line is in."""
+		count = len(quiet)
+		last = line
+		while quiet[(last + 1) % count] and last - line < count:
+			last += 1
+		lap, place = divmod(last, count)
+		end = lap * self.ticks + edges[place + 1]
+		return (self.zero.first_from(end) - 1) % len(self.zero)
+
+	def polarities(self):
+		for item, names in (("horizontal sync polarity", ("hsync", "sync")), ("vertical sync polarity", ("vsync", "sync"))):
+			for name in names:
+				if name in self.board.signals:
+					self.values[item] = (Fraction(1 if self.board.signals[name][0] == "high" else -1),) * 2
+					break
