@@ -1,7 +1,8 @@
 #!/usr/bin/python3
 """Has the program measure signals whose figures are published, and holds what it finds against them.
 
-	limits_published.py FOLDER      plans and images are written there
+	limits_published.py FOLDER          plans and images are written there
+	limits_published.py FOLDER wrong    one line of the SMPTE signal has a sync of 68 samples: must be seen in three items
 
 	S170   SMPTE 170M-2004, clauses 11 to 13, tables 2 and 3, figure 7
 	S244   SMPTE 244M-2003, 4.1, tables 4 and 5
@@ -315,7 +316,17 @@ def common_practice(cases):
 			cases.judge.same(f"{board.name}: line rate to two places", "15699.76", f"{answer.items['line rate']['low_rounded']:.2f}")
 
 
+def wrong(cases):
+	frame = frame_of(SYSTEM_525, SMPTE_GEOMETRY, BURST_525)
+	frame[100] = painted(frame[100], "sync", 67, 68)
+	cases.hold(Board("wrong", "315/22 MHz", TELEVISION, frame, subcarrier="master / 4", standard="composite-525"), SMPTE)
+
+
+def main(folder, *only):
+	cases = Cases(folder)
+	for part in [wrong] if only else [smpte, ebu, four_fsc_625, component, modes, common_practice]:
+		part(cases)
+
+
 if __name__ == "__main__":
-	all_cases = Cases(sys.argv[1])
-	for part in (smpte, ebu, four_fsc_625, component, modes, common_practice):
-		part(all_cases)
+	main(*sys.argv[1:])
