@@ -40,6 +40,14 @@ class Answer:
 		return Fraction(entry[prefix + "low"]), Fraction(entry[prefix + "high"])
 
 
+def written(board, folder):
+	"""The path of the board's plan."""
+	path = os.path.join(folder, board.name + ".yaml")
+	with open(path, "w", encoding="utf-8") as file:
+		file.write(board.yaml())
+	return path
+
+
 def checked(plan):
 	return Answer(json.loads(run("check", "--json", plan)))
 

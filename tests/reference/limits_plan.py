@@ -79,6 +79,7 @@ class Board:
 		self.subcarrier_text = more.get("subcarrier")
 		self.accuracy = more.get("accuracy")
 		self.form = more.get("form", "loop")
+		self.outputs = more.get("outputs", "registered")  # of a loop
 		self.of_frame = more.get("of_frame", ())  # signals of the frame stage
 		self.standard = more.get("standard")
 		self.grade = more.get("grade")
@@ -149,7 +150,8 @@ class Board:
 		cells, lines, kinds = sum(map(len, self.frame)), len(self.frame), len(types)
 		if self.form == "loop":
 			bits = bits_for(cells)
-			return ["machine:", "  form: loop", f"  state: {bits} bits", "chips: { part: LOOP }", "parts:", part("LOOP", bits)]
+			return ["machine:", "  form: loop", f"  state: {bits} bits", f"  outputs: {self.outputs}",
+				"chips: { part: LOOP }", "parts:", part("LOOP", bits)]
 		line, frame = bits_for(max(map(len, types))), bits_for(lines)
 		return ["machine:", "  form: line-frame", f"  line: {{ state: {line} bits }}", f"  frame: {{ state: {frame} bits }}",
 			"chips: { line: { part: LINE }, frame: { part: FRAME } }", "parts:",

@@ -18,7 +18,7 @@ import sys
 from fractions import Fraction
 
 from limits_catalogue import read_standards
-from limits_judge import Broken, Judge, checked, proved
+from limits_judge import Broken, Judge, checked, proved, written
 from limits_measure import Measurement
 from limits_plan import Board, painted
 from limits_television import BURST_525, SYSTEM_525, SYSTEM_625, Geometry, frame_of, without
@@ -105,9 +105,7 @@ class Cases:
 		self.judge = Judge(self.standards)
 
 	def answer(self, board, build):
-		path = os.path.join(self.folder, board.name + ".yaml")
-		with open(path, "w", encoding="utf-8") as file:
-			file.write(board.yaml())
+		path = written(board, self.folder)
 		return proved(path, os.path.join(self.folder, board.name)) if build else checked(path)
 
 	def hold(self, board, published, missed=(), missed_monitor=(), build=False):
