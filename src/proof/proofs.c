@@ -17,6 +17,7 @@ static const struct proof_row proof_rows[PROOF_COUNT] = {
 	[PROOF_COLOUR] = {"colour", true, prove_colour},
 	[PROOF_POWER_UP] = {"power-up", true, prove_power_up},
 	[PROOF_UPSET] = {"upset", false, prove_upset},
+	[PROOF_LIMITS] = {"limits", false, prove_limits},
 	[PROOF_GLITCHES] = {"glitches", false, prove_glitches},
 	[PROOF_SPEED] = {"speed", false, prove_speed},
 	[PROOF_SWEEP] = {"sweep", true, prove_sweep},

@@ -12,6 +12,7 @@
 #include "view/columns.h"
 #include "view/divider.h"
 #include "view/figures.h"
+#include "view/limits.h"
 #include "view/proofs.h"
 
 // A line type on its way to a table.
@@ -229,8 +230,14 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 		text_put(out, "\n");
 		view_chips(out, plan);
 		text_put(out, "\n");
+		if (plan->standard != NULL) {
+			view_limits(out, proofs);
+			text_put(out, "\n");
+		}
 		view_proof(out, proofs, PROOF_COLOUR, false);
+		view_proof(out, proofs, PROOF_LIMITS, false);
 		view_proof(out, proofs, PROOF_SPEED, false);
+		view_counting(out, proofs);
 		if (kept != NULL)
 			*kept = !proofs_failed(proofs, false);
 		if (advice_kept != NULL)

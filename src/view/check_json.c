@@ -128,6 +128,7 @@ static json_t *judgement_json(const struct timeline *timeline, bool *kept, bool 
 		return NULL;
 	json_t *all = view_proofs_json(proofs), *object = json_object();
 	json_put(&object, "colour", json_incref(json_object_get(all, "colour")));
+	json_put(&object, "limits", json_incref(json_object_get(all, "limits")));
 	json_put(&object, "speed", json_incref(json_object_get(all, "speed")));
 	json_decref(all);
 	if (kept != NULL)

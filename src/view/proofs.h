@@ -18,6 +18,9 @@ void view_proofs(struct text *out, const struct proofs *proofs, bool colour);
 // The same for one proof, without that last line.
 void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind kind, bool colour);
 
+// Puts that last line if a line is named.
+void view_counting(struct text *out, const struct proofs *proofs);
+
 // Puts a line of the same form for a must that follows from proofs: `words` say what.
 void view_must(struct text *out, const char *name, bool kept, const char *words, bool colour);
 
@@ -52,6 +55,19 @@ void view_must(struct text *out, const char *name, bool kept, const char *words,
 //                 "longest_bank", "lost_states", and if some are lost "second_loop": { "state", "cells" } }
 //   "upset":    { "upsets", "worst_cells", "worst": { PLACE, "bit" }, fraction mean_cells, "worst_slip_cells", fraction
 //                 worst_slip_lines, "worst_slip": { PLACE, "bit" }, fraction mean_slip_cells }
+//   "limits":   { "standard": its name ("own" for limits of the plan's own alone), "own_limits": how many items have limits of the
+//                 plan's own, "grade", "kept", "missed", "not_measured": { "studio", "monitor" }: how many of the limits that bind,
+//                 "items": [ { "item", "unit": of all values below, which are exact, beside NAME_rounded; polarities are 1 or -1,
+//                 "low", "high": measured over the frame, "accuracy_low", "accuracy_high" (where the clock's accuracy widens
+//                 them), "low_at", "high_at": { PLACE } where the first of them begins, or in place of all these
+//                 "not_measured": why, in words; "studio", "monitor": { "nominal", "low", "high" (those that there are), "source",
+//                 and if one of low and high is there "kept", "margin" (to the nearer bound; below zero: missed by so much),
+//                 "share" (of the tolerance; not where low is high), "move": what would keep it, if whole cells do: { "what":
+//                 "edge", "picture" or "line length", "cells" (later, or longer; negative: earlier, shorter), "line_type", of an
+//                 edge "after_region", "before_region": between which it is } } } ],
+//                 "fields": the first 16, from 0V to 0V [ { "begins": "at a line" or "half way through a line",
+//                 "lines_without_burst": [[first, last], …] by the standard's numbers (if it numbers lines) } ],
+//                 "burst_pauses_kept": these are the standard's (the same) }
 //   "glitches": { "decoded": signals are decoded from the state, "edges", "multi_bit_edges", "disturbed": [ { "signal",
 //                 "edges", PLACE of the cell that the first of them begins, "from_state", "to_state", "from_code",
 //                 "between_code", "to_code" } ], if decoded time settle (_s, _ns) from an edge until decoded pins have their

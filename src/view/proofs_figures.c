@@ -2,6 +2,7 @@
 #include <inttypes.h>
 
 #include "base/text.h"
+#include "view/limits.h"
 #include "view/proofs_shared.h"
 #include "view/states.h"
 
@@ -472,6 +473,7 @@ void put_proof_figures(struct text *out, const struct proofs *proofs, enum proof
 	case PROOF_COLOUR: put_colour(out, proofs); break;
 	case PROOF_POWER_UP: put_power_up(out, proofs); break;
 	case PROOF_UPSET: put_upset(out, proofs); break;
+	case PROOF_LIMITS: put_limits_figures(out, proofs); break;
 	case PROOF_GLITCHES: put_glitches(out, proofs); break;
 	case PROOF_SPEED: put_speed(out, proofs); break;
 	case PROOF_SWEEP: put_sweeps(out, proofs); break;

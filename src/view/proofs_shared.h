@@ -59,4 +59,7 @@ void put_sweep(struct text *out, const struct sweep *asked, const struct sweep_r
 // Puts the figures of a proof, in words, without line breaks. Not for proofs that have a reason_of.
 void put_proof_figures(struct text *out, const struct proofs *proofs, enum proof_kind kind);
 
+// In proofs_json.c: sets the five keys of a PLACE, see view/proofs.h.
+void json_put_place(json_t **object, const struct timeline *timeline, uint32_t cell);
+
 #endif

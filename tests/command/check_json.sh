@@ -34,7 +34,7 @@ same "picture" "21 80 192 720 0" "$(value '" ".join(str(d["lines"][0]["regions"]
 same "a fill asks for nothing" "False" "$(value '"asked_ticks" in d["lines"][0]["regions"][4]')"
 same "frame" "262 26462 238944 1640625/27379 59.922751" "$(value '" ".join(map(str, [d["frame"]["lines"], d["frame"]["cells"],
 	d["frame"]["ticks"], d["frame"]["rate"]["fraction"], d["frame"]["rate"]["decimal"]]))')"
-same "colour and speed" "{'colour': 'pass', 'speed': 'pass'}" "$(value '{key: proof["verdict"] for key, proof in d["proofs"].items()}')"
+same "colour, limits and speed" "{'colour': 'pass', 'limits': 'absent', 'speed': 'pass'}" "$(value '{key: proof["verdict"] for key, proof in d["proofs"].items()}')"
 
 # Where every cell is stretched, the shortest is a stretched one: (1 + 1) us.
 cat >"$work/all-long.yaml" <<'PLAN'

@@ -11,7 +11,7 @@ from oracle_chips import Fault, bank_count
 from oracle_machine import codes_seen, glitch_edges, multi_bit_edges
 from oracle_plan import quantity_of
 
-PROOFS = ["closure", "signals", "colour", "power-up", "upset", "glitches", "speed", "sweep"]
+PROOFS = ["closure", "signals", "colour", "power-up", "upset", "limits", "glitches", "speed", "sweep"]
 MUSTS = {"closure", "signals", "colour", "power-up", "sweep"}
 
 

@@ -121,6 +121,7 @@ static inline void harbour_fill(struct harbour *harbour)
 	                                  .codes = harbour->codes, .code_counts = harbour->code_counts};
 	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
 		harbour->proofs.proof[kind].counterexample.signal = SIZE_MAX;
+	harbour->proofs.proof[PROOF_LIMITS].verdict = VERDICT_ABSENT;
 	harbour_figures(&harbour->proofs);
 	harbour->proofs.glitches.first = harbour->edges;
 }
