@@ -24,6 +24,22 @@ class Limit:
 	def keeps(self, low, high):
 		return (self.low is None or low >= self.low) and (self.high is None or high <= self.high)
 
+	def fits(self, low, high):
+		"""Whether 64-bit fractions hold what is kept and by how much: the program does not judge otherwise."""
+		margins = [low - self.low] if self.low is not None else []
+		margins += [self.high - high] if self.high is not None else []
+		if self.low is not None and self.high is not None:
+			scale = (self.high - self.low) / 2
+		else:
+			bound = self.low if self.high is None else self.high
+			scale = abs(self.nominal - bound) if self.nominal not in (None, bound) else abs(bound)
+		shares = [min(margins) / scale] if scale else []
+		return all(fits(value) for value in [low, high, *margins, *shares])
+
+
+def fits(value):
+	return abs(value.numerator) < 1 << 63 and value.denominator < 1 << 63
+
 
 def quotient(text):
 	numbers = [Fraction(number) for number in text.split("/")]

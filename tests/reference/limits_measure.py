@@ -7,6 +7,14 @@ decided here as follows:
   of the usual sync, and any other is a line's sync. A line is the commonest distance of two pulses.
 * A normal line begins with a line's sync, and so does the pulse after it.
 * Lines are counted by pulses, half by half: a distance of two pulses is a whole number of half lines, the nearest.
+
+Where a definition can be read in more than one way, all readings are measured, and any of them will do:
+
+* What is measured beside a line's sync (porches, burst, picture): in every line that begins with a line's sync, but what has to do
+  with picture only where picture is in the line's first half; or in normal lines alone, and only if both halves have picture.
+* The picture's height: lines that have picture; or all from the first to the last that has. Vertical blanking: lines without
+  picture from one 0V to the next; or all between the last picture before 0V and the first after it.
+* A line without burst far from 0V: of the field that it is in; or of the nearest 0V.
 """
 
 from bisect import bisect_left, bisect_right
@@ -77,7 +85,8 @@ class Measurement:
 		self.picture = complement(self.blank) if self.blank else None
 		self.classify()
 		self.find_fields()
-		self.values = {}
+		self.values = {}    # item to (lowest, highest)
+		self.readings = {}  # item to other such pairs
 
 	# ---- pulses, lines and fields
 
@@ -129,6 +138,12 @@ class Measurement:
 		if values:
 			self.values[item] = (Fraction(min(values)), Fraction(max(values)))
 
+	def note_other(self, item, values):
+		values = list(values)
+		pair = (Fraction(min(values)), Fraction(max(values))) if values else None
+		if pair != self.values.get(item):
+			self.readings.setdefault(item, []).append(pair)
+
 	def note_times(self, item, ticks):
 		self.note(item, [value / self.board.master for value in ticks])
 
@@ -165,23 +180,47 @@ class Measurement:
 		self.note_times("horizontal sync width",
 			[self.pulses.width(number) for number in range(len(self.pulses)) if self.kind(number) == SYNC])
 
+	def has_whole_picture(self, number):
+		"""Whether a normal line begins with that pulse, and has picture in both halves."""
+		if self.kind(number) != SYNC or self.kind(number + 1) != SYNC or not self.blank:
+			return False
+		start, end = self.pulses.start(number), self.pulses.start(number + 1)
+		middle = start + self.line // 2
+		return self.has_picture(start, middle) and self.has_picture(middle, end)
+
+	def note_both(self, item, ticks, others):
+		"""ticks: by the pulse at which the line begins; others: the pulses that the second reading leaves."""
+		self.note_times(item, ticks.values())
+		self.note_other(item, [ticks[number] / self.board.master for number in ticks if number in others])
+
+	def note_cycles_of_both(self, item, ticks, others):
+		if self.board.subcarrier:
+			self.note_cycles(item, ticks.values())
+			self.note_other(item,
+				[ticks[number] * self.board.subcarrier / self.board.master for number in ticks if number in others])
+
 	def bursts(self):
-		"""Of each burst in a line that begins with a line's sync."""
+		"""Of the bursts in lines that begin with a line's sync: one in each."""
 		if not self.burst:
 			return
 		pulses, burst = self.pulses, self.burst
-		found = [(pulses.last_from(burst.start(number)), number) for number in range(len(burst))]
-		found = [(line, number) for line, number in found if self.kind(line) == SYNC]
-		starts = [burst.start(number) - pulses.start(line) for line, number in found]
-		lengths = [burst.width(number) for _, number in found]
-		self.note_times("breezeway", [burst.start(number) - pulses.end(line) for line, number in found])
-		self.note_times("burst start", starts)
-		self.note_cycles("burst start in cycles", starts)
-		self.note_times("burst length", lengths)
-		self.note_cycles("burst length in cycles", lengths)
+		found = {}
+		for number in range(len(burst)):
+			line = pulses.last_from(burst.start(number))
+			if self.kind(line) == SYNC:
+				found[line % len(pulses)] = (line, number)
+		starts = {key: burst.start(number) - pulses.start(line) for key, (line, number) in found.items()}
+		lengths = {key: burst.width(number) for key, (_, number) in found.items()}
+		normal = set(self.whole_lines())
+		self.note_both("breezeway", {key: burst.start(number) - pulses.end(line) for key, (line, number) in found.items()}, normal)
+		self.note_both("burst start", starts, normal)
+		self.note_cycles_of_both("burst start in cycles", starts, normal)
+		self.note_both("burst length", lengths, normal)
+		self.note_cycles_of_both("burst length in cycles", lengths, normal)
 		pictures = dict(self.picture_starts()) if self.blank else {}
-		self.note_times("burst end to picture", [pictures[line % len(pulses)] - burst.end(number) % self.ticks
-			for line, number in found if line % len(pulses) in pictures])
+		self.note_both("burst end to picture",
+			{key: pictures[key] - pulses.start(key) - starts[key] - lengths[key] for key in found if key in pictures},
+			{key for key in normal if self.has_whole_picture(key)})
 
 	def picture_starts(self):
 		"""(number, tick) of each line's sync and the end of its blanking, where it is in the first half of the line."""
@@ -192,29 +231,33 @@ class Measurement:
 				if end < self.pulses.start(number + 1) and 2 * (end - start) < self.line:
 					yield number, end
 
+	def front_porches(self):
+		"""By the pulse that ends the porch, where picture comes before it."""
+		for number in range(len(self.pulses)):
+			start = self.pulses.start(number)
+			if self.kind(number) == SYNC and self.blank.covers(start):
+				begin = self.blank.start(self.blank.last_from(start))
+				if begin > self.pulses.start(number - 1):
+					yield number, start - begin
+
 	def pictures(self):
 		if not self.blank:
 			return
 		pulses, blank = self.pulses, self.blank
-		starts = dict(self.picture_starts())
-		self.note_times("picture start", [end - pulses.start(number) for number, end in starts.items()])
-		self.note_times("back porch", [end - pulses.end(number) for number, end in starts.items()])
-		porches = {}
-		for number in range(len(pulses)):
-			start = pulses.start(number)
-			if self.kind(number) == SYNC and blank.covers(start):
-				begin = blank.start(blank.last_from(start))
-				if begin > pulses.start(number - 1):
-					porches[number] = start - begin
-		self.note_times("front porch", porches.values())
-		self.note_times("horizontal blanking",
-			[porches[number] + end - pulses.start(number) for number, end in starts.items() if number in porches])
+		starts, porches = dict(self.picture_starts()), dict(self.front_porches())
+		whole = {number for number in range(len(pulses)) if self.has_whole_picture(number)}
+		after_whole = {(number + 1) % len(pulses) for number in whole}
+		self.note_both("picture start", {number: end - pulses.start(number) for number, end in starts.items()}, whole)
+		self.note_both("back porch", {number: end - pulses.end(number) for number, end in starts.items()}, whole)
+		self.note_both("front porch", porches, after_whole)
+		self.note_both("horizontal blanking", {number: porches[number] + starts[number] - pulses.start(number)
+			for number in starts if number in porches}, whole & after_whole)
 		# Pictures of whole lines.
-		whole = [(number, end) for number, end in starts.items() if self.halves[number] == 2]
-		widths = [blank.start(blank.first_from(end)) - end for _, end in whole]
-		self.note_times("picture width", widths)
-		self.note_times("horizontal centre",
-			[Fraction(2 * (end - pulses.start(number)) + width, 2) for (number, end), width in zip(whole, widths)])
+		ends = {number: end for number, end in starts.items() if self.halves[number] == 2}
+		widths = {number: blank.start(blank.first_from(end)) - end for number, end in ends.items()}
+		self.note_both("picture width", widths, whole)
+		self.note_both("horizontal centre",
+			{number: end - pulses.start(number) + Fraction(widths[number], 2) for number, end in ends.items()}, whole)
 
 	def vertical_pulses(self):
 		pulses = self.pulses
@@ -249,14 +292,14 @@ class Measurement:
 			end += 1
 		return first, zero, after, end
 
-	def shown(self):
-		"""For each half line of the frame whether it has picture: from the frame's first pulse on."""
-		halves = []
+	def half_lines(self, nominal=False):
+		"""(start, end) of each half line of the frame, from its first pulse on: a distance of pulses is parted evenly, or into half
+		lines of the usual length, in whole ticks, and a rest."""
 		for number, count in enumerate(self.halves):
 			start, distance = self.pulses.start(number), self.distances[number]
-			edges = [start + Fraction(distance * part, count) for part in range(count + 1)]
-			halves += [self.has_picture(*pair) for pair in zip(edges, edges[1:])]
-		return halves
+			part = self.line // 2 if nominal else Fraction(distance, count)
+			edges = [start + part * index for index in range(count)] + [start + distance]
+			yield from zip(edges, edges[1:])
 
 	def has_picture(self, start, end):
 		number = self.picture.last_from(start)
@@ -265,21 +308,33 @@ class Measurement:
 	def vertical_pictures(self):
 		if not self.blank or not len(self.zero) or not len(self.picture):
 			return
-		shown = self.shown()
-		found = {name: [] for name in ("front", "back", "blanking", "top", "height", "centre")}
+		for nominal in (False, True):
+			shown = [self.has_picture(*half) for half in self.half_lines(nominal)]
+			found = self.extents(shown)
+			note = self.note_other if nominal else self.note
+			for name, item in (("front", "vertical front porch"), ("back", "vertical back porch"), ("top", "picture top"),
+					("blanking", "vertical blanking"), ("height", "picture height"), ("centre", "vertical centre")):
+				note(item, found[name])
+			self.note_other("picture height", found["extent"])
+			# The front porch of a field is before the next one's 0V.
+			porches = found["front"][-1:] + found["front"][:-1]
+			self.note_other("vertical blanking", [top + porch for top, porch in zip(found["top"], porches)])
+
+	def extents(self, shown):
+		"""By field, in lines; shown: of each half line whether it has picture."""
+		found = {name: [] for name in ("front", "back", "blanking", "top", "height", "centre", "extent")}
 		for field in range(len(self.zero)):
 			here, there = self.place(self.zero.start(field)), self.place(self.zero.start(field + 1))
 			inside = [half for half in range(int(here), int(there)) if shown[half % len(shown)]]
 			first, end = inside[0], inside[-1] + 1
 			found["top"].append((first - here) / 2)
 			found["height"].append(Fraction(len(inside), 2))
+			found["extent"].append(Fraction(end - first, 2))
 			found["blanking"].append((there - here - len(inside)) / 2)
 			found["centre"].append((Fraction(first + end, 2) - here) / 2)
 			found["front"].append((there - end) / 2)
 			found["back"].append((first - self.sync_end(field, here)) / 2)
-		for name, item in (("front", "vertical front porch"), ("back", "vertical back porch"), ("blanking", "vertical blanking"),
-				("top", "picture top"), ("height", "picture height"), ("centre", "vertical centre")):
-			self.note(item, found[name])
+		return found
 
 	def sync_end(self, field, here):
 		if not self.composite:
@@ -289,27 +344,26 @@ class Measurement:
 
 	# ---- burst in the lines around 0V
 
-	def line_starts(self):
-		"""Numbers of the pulses at which lines begin, in an order that goes round: every second half line from the first 0V's on,
-		or from that half a line before it if line syncs are there."""
-		origin = self.half(self.broad_first[0])
-		syncs = Counter((self.half(number) - origin) % 2 for number in range(len(self.pulses)) if self.kind(number) == SYNC)
-		odd = syncs[1] > syncs[0]
-		return [number for number in range(len(self.pulses)) if (self.half(number) - origin) % 2 == odd]
+	def line_parity(self):
+		"""0 or 1: of the half lines, from the frame's first pulse on, every second one begins a line: one at which line syncs are."""
+		syncs = Counter(self.half(number) % 2 for number in range(len(self.pulses)) if self.kind(number) == SYNC)
+		return int(syncs[1] > syncs[0])
 
 	def lines_without_burst(self):
 		"""Of the lines that surround a field's 0V without burst, and of further ones in the field."""
 		if not self.burst or not self.composite or not self.broad_first:
 			return
-		starts = self.line_starts()
-		edges = [self.pulses.start(number) for number in starts] + [self.pulses.start(starts[0]) + self.ticks]
+		first = self.line_parity()
+		edges = [start for start, _ in self.half_lines()][first::2]
+		edges.append(edges[0] + self.ticks)
 		quiet = [not self.has_burst(*pair) for pair in zip(edges, edges[1:])]
-		counts = Counter({field: 0 for field in range(len(self.zero))})
+		counts, nearest = (Counter({field: 0 for field in range(len(self.zero))}) for _ in range(2))
 		for line, is_quiet in enumerate(quiet):
 			if is_quiet:
 				counts[self.field_of(line, edges, quiet)] += 1
-		self.pauses = quiet
+				nearest[self.nearest_field(2 * line + first + 1)] += 1
 		self.note("lines without burst", counts.values())
+		self.note_other("lines without burst", nearest.values())
 
 	def has_burst(self, start, end):
 		number = self.burst.last_from(start)
@@ -324,6 +378,14 @@ class Measurement:
 		lap, place = divmod(last, count)
 		end = lap * self.ticks + edges[place + 1]
 		return (self.zero.first_from(end) - 1) % len(self.zero)
+
+	def nearest_field(self, half):
+		zero, lap = [self.half(number) for number in self.broad_first], self.half_at[-1]
+		return min(range(len(zero)), key=lambda field: min((half - zero[field]) % lap, (zero[field] - half) % lap))
+
+	def begins_at_a_line(self):
+		"""Whether the 0V of some field is where a line begins."""
+		return any(self.half(number) % 2 == self.line_parity() for number in self.broad_first)
 
 	def polarities(self):
 		for item, names in (("horizontal sync polarity", ("hsync", "sync")), ("vertical sync polarity", ("vsync", "sync"))):

@@ -372,7 +372,12 @@ def main(folder, first, count):
 		except (Broken, KeyError) as reason:
 			judge.verdict(False, name, "an answer", repr(reason))
 			continue
-		judge.judge(name, board, answer, Measurement(board, standards[board.standard].fields).measure())
+		measurement = Measurement(board, standards[board.standard].fields)
+		predicted = measurement.measure()
+		# No board has so many lines that the pauses of two fields could be the standard's; only where lines are numbered does
+		# that matter.
+		pauses = None if len(measurement.broad_first) == 1 else not measurement.begins_at_a_line()
+		judge.judge(name, board, answer, predicted, measurement.readings, pauses)
 
 
 if __name__ == "__main__":

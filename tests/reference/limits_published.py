@@ -108,9 +108,9 @@ class Cases:
 		path = written(board, self.folder)
 		return proved(path, os.path.join(self.folder, board.name)) if build else checked(path)
 
-	def hold(self, board, published, missed=(), missed_monitor=(), build=False):
-		"""The program finds the published values, so does the measurement of limits_measure.py, and the limits that are missed
-		are these."""
+	def hold(self, board, published, missed=(), build=False, pauses=True):
+		"""The program finds the published values, so does the measurement of limits_measure.py, and the studio's limits that are
+		missed are these, the monitor's none. pauses: whether lines without burst are the standard's."""
 		try:
 			answer = self.answer(board, build)
 		except (Broken, KeyError) as reason:
@@ -120,15 +120,18 @@ class Cases:
 		predicted = Measurement(board, self.standards[board.standard].fields).measure()
 		for item in self.standards[board.standard].limits:
 			self.judge.same(f"{board.name}: {item} by the other measurement", pairs.get(item), predicted.get(item))
-		self.judge.judge(board.name, board, answer, pairs)
+		self.judge.judge(board.name, board, answer, pairs, pauses=pauses)
 		self.judge.missed(board.name, answer, "studio", missed)
-		self.judge.missed(board.name, answer, "monitor", missed_monitor)
+		self.judge.missed(board.name, answer, "monitor", [])
 		return answer
 
-	def pauses(self, name, answer, wanted):
-		"""By field, the standard's numbers of the lines without burst."""
-		found = [field["lines_without_burst"] for field in answer.limits["fields"]] if answer else None
-		self.judge.same(f"{name}: lines without burst by number", wanted, found)
+	def pauses(self, name, answer, at_a_line, amid_a_line, sequence=True):
+		"""The standard's numbers of the lines without burst, of the fields that begin at a line and amid one; in either order."""
+		wanted = [("at a line", [list(pause)]) for pause in at_a_line]
+		wanted += [("half way through a line", [list(pause)]) for pause in amid_a_line]
+		found = [(field["begins"], field["lines_without_burst"]) for field in answer.limits["fields"]] if answer else []
+		self.judge.same(f"{name}: lines without burst by number", sorted(wanted), sorted(found))
+		self.judge.same(f"{name}: pauses of the burst", sequence, answer and answer.limits["burst_pauses_kept"])
 
 
 def rotated(frame, line, cells):
@@ -149,7 +152,7 @@ def smpte(cases):
 			(board("from-picture", lines=rotated(frame, 100, 132)), False),
 			(board("from-field-2", lines=rotated(frame, 272, 455 // 2)), False)):
 		answer = cases.hold(each, SMPTE, build=build)
-		cases.pauses(each.name, answer, [[[1, 9]], [[264, 272]]])
+		cases.pauses(each.name, answer, [(1, 9)], [(264, 272)])
 		if answer and not build:
 			cases.judge.same(f"{each.name}: ticks of a frame", str(477_750), answer.frame["ticks"])
 	# 0.044 Hz of 15,734.266 are 2.7964 ppm (47 CFR 73.682(a)(6)), 10 Hz of the subcarrier 2.7937 (S170 11.1).
@@ -166,23 +169,28 @@ def ebu(cases):
 	def board(name, lines, **more):
 		return Board(f"ebu-{name}", "13.5 MHz", TELEVISION, lines, **{**common, **more})
 
-	# B1700 figure 8: bursts are left out in 9 lines, two sequences for fields 1 and 2, two for fields 3 and 4.
-	one_two = frame((623, 6), (310, 318))
-	answer = cases.hold(board("fields-1-2", one_two, form="line-frame"), EBU, build=True)
-	cases.pauses("ebu-fields-1-2", answer, [[[623, 6]], [[310, 318]]])
-	answer = cases.hold(board("fields-3-4", frame((622, 5), (311, 319))), EBU)
-	cases.pauses("ebu-fields-3-4", answer, [[[622, 5]], [[311, 319]]])
+	# B1700 figure 8: bursts are left out in 9 lines, other ones in each of four fields. A frame of two fields has the right number
+	# of them but not the sequence, wherever it begins.
+	one_two, lines = frame((623, 6), (310, 318)), "lines without burst"
 	four = frame((622, 625), (1, 6), (310, 318)) + frame((623, 625), (1, 5), (311, 319))
-	answer = cases.hold(board("four-fields", four, form="line-frame"), EBU, build=True)
-	cases.pauses("ebu-four-fields", answer, [[[623, 6]], [[310, 318]], [[622, 5]], [[311, 319]]])
-	answer = cases.hold(board("from-field-2", rotated(one_two, 325, 200)), EBU)
-	cases.pauses("ebu-from-field-2", answer, [[[623, 6]], [[310, 318]]])
+	for name, each, at_a_line, amid_a_line, sequence in (
+			("fields-1-2", one_two, [(623, 6)], [(310, 318)], False),
+			("from-field-2", rotated(one_two, 325, 200), [(623, 6)], [(310, 318)], False),
+			("fields-3-4", frame((622, 5), (311, 319)), [(622, 5)], [(311, 319)], False),
+			("four-fields", four, [(623, 6), (622, 5)], [(310, 318), (311, 319)], True),
+			("four-from-field-2", rotated(four, 325, 200), [(623, 6), (622, 5)], [(310, 318), (311, 319)], True),
+			("four-from-field-3", rotated(four, 700, 0), [(623, 6), (622, 5)], [(310, 318), (311, 319)], True)):
+		form = "line-frame" if name in ("fields-1-2", "four-fields") else "loop"
+		answer = cases.hold(board(name, each, form=form), EBU, [] if sequence else [lines], form != "loop", sequence)
+		cases.pauses(f"ebu-{name}", answer, at_a_line, amid_a_line, sequence)
 	# Blanking of 12 us is at its limit, so that no inaccuracy is left; a sample less leaves 1 ppm, that of the line rate.
 	narrow = {**EBU, **along_the_line(SAMPLING, 864, 63, 21, 140), **burst_of(SAMPLING, FSC_625, 63, 76, 30, 140)}
-	narrow_frame = frame((623, 6), (310, 318), geometry=Geometry(864, 432, 63, 32, 369, 140, 21, (76, 30)))
-	cases.hold(board("accuracy-1", narrow_frame, accuracy="1 ppm"), narrow)
-	cases.hold(board("accuracy-1-01", narrow_frame, accuracy="1.01 ppm"), narrow, ["line rate", "field rate"])
-	cases.hold(board("accuracy-0-1", one_two, accuracy="0.1 ppm"), EBU, ["horizontal blanking", "picture width"])
+	shape = Geometry(864, 432, 63, 32, 369, 140, 21, (76, 30))
+	narrow_frame = frame((622, 625), (1, 6), (310, 318), geometry=shape) + frame((623, 625), (1, 5), (311, 319), geometry=shape)
+	for name, each, figures, ppm, missed in (("accuracy-1", narrow_frame, narrow, "1 ppm", []),
+			("accuracy-1-01", narrow_frame, narrow, "1.01 ppm", ["line rate", "field rate"]),
+			("accuracy-0-1", four, EBU, "0.1 ppm", ["horizontal blanking", "picture width"])):
+		cases.hold(board(name, each, accuracy=ppm), figures, missed)
 
 
 def four_fsc_625(cases):
@@ -207,7 +215,7 @@ def four_fsc_625(cases):
 		}
 		frame = frame_of(SYSTEM_625, geometry, bursts, {313: long_line, 625: long_line})
 		board = Board(f"ebu-{4 * scale}-fsc", f"{float(clock) / 10**6} MHz", TELEVISION, frame, **common)
-		answer = cases.hold(board, figures, ["line rate", "subcarrier cycles per line", *more])
+		answer = cases.hold(board, figures, ["line rate", "subcarrier cycles per line", "lines without burst", *more], pauses=False)
 		if answer:
 			cases.judge.same(f"{board.name}: ticks of a frame", str(709_379 * scale), answer.frame["ticks"])
 
@@ -309,7 +317,7 @@ def common_practice(cases):
 			"picture height", "vertical centre", "lines without burst", "field rate"]
 		if samples == 912:
 			missed += ["line rate", "subcarrier cycles per line"]
-		answer = cases.hold(board, figures, missed)
+		answer = cases.hold(board, figures, missed, pauses=False)
 		if answer and samples == 912:
 			cases.judge.same(f"{board.name}: line rate to two places", "15699.76", f"{answer.items['line rate']['low_rounded']:.2f}")
 
