@@ -80,9 +80,10 @@ class Judge:
 	def same(self, name, wanted, found):
 		self.verdict(wanted == found, name, wanted, found)
 
-	def judge(self, name, board, answer, predicted, readings=None, pauses=True):
+	def judge(self, name, board, answer, predicted, readings=None, pauses=True, stray_tick=None):
 		"""Every item of the board's standard as predicted, or as one of its other readings, and judged as the catalogue has it.
-		pauses: whether the lines without burst are those that the standard numbers; None: left to the program."""
+		pauses: whether the lines without burst are those that the standard numbers; None: left to the program. stray_tick:
+		at which the first sync pulse begins that belongs to nothing."""
 		standard = self.standards[board.standard]
 		self.same(f"{name}: items", sorted(standard.limits), sorted(answer.items))
 		counts = {what: {grade: 0 for grade in GRADES} for what in ("kept", "missed", "not measured")}
@@ -96,7 +97,7 @@ class Judge:
 				print(f"open {name}: {item}: {' or '.join(map(shown, allowed))}, found {shown(found)}")
 			self.judge_limits(f"{name}: {item}", board, item, answer, standard.limits[item], pauses, counts)
 		if agreed:
-			self.judge_counts(name, board, answer, counts)
+			self.judge_counts(name, board, answer, counts, stray_tick)
 
 	def judge_limits(self, name, board, item, answer, limits, pauses, counts):
 		"""By what the program itself found."""
@@ -122,13 +123,24 @@ class Judge:
 			counts["not measured" if kept is None else "kept" if kept else "missed"][grade] += 1
 			self.same(f"{name}: {grade} kept", kept, found)
 
-	def judge_counts(self, name, board, answer, counts):
+	def judge_counts(self, name, board, answer, counts, stray_tick):
 		grade = board.grade or "monitor"
 		for what in ("kept", "missed"):
 			self.same(f"{name}: {what}", counts[what], answer.limits[what])
 		self.same(f"{name}: not measured", counts["not measured"], answer.limits["not_measured"])
 		self.same(f"{name}: grade", (board.standard, grade), (answer.limits["standard"], answer.limits["grade"]))
-		self.same(f"{name}: verdict", "fail" if counts["missed"][grade] else "pass", answer.limits["verdict"])
+		self.same(f"{name}: verdict", "fail" if stray_tick is not None or counts["missed"][grade] else "pass", answer.limits["verdict"])
+		cell = answer.limits.get("counterexample", {}).get("frame_cell")
+		self.same(f"{name}: stray", stray_tick, None if cell is None else board.tick_of_cell()[cell])
+
+	def judge_places(self, name, board, answer, begins):
+		"""The lowest and highest values begin where they do. begins: item to a map from values to ticks."""
+		ticks = board.tick_of_cell()
+		for item in sorted(set(begins) & set(answer.items)):
+			for end, value in zip(("low_at", "high_at"), answer.values(item) or ()):
+				tick = ticks[answer.items[item][end]["frame_cell"]]
+				allowed = begins[item].get(value, set())
+				self.verdict(tick in allowed, f"{name}: {item}: {end}", f"tick {sorted(allowed)[:3]}", tick)
 
 	def missed(self, name, answer, grade, wanted):
 		"""The items that miss the grade are these, or not measured."""

@@ -6,6 +6,8 @@ decided here as follows:
 * Of the pulses of composite sync, a broad one is longer than a quarter of a line, an equalising one shorter than three quarters
   of the usual sync, and any other is a line's sync. A line is the commonest distance of two pulses.
 * A normal line begins with a line's sync, and so does the pulse after it.
+* Equalising pulses go with broad ones, next to them or to others that do. A narrow pulse elsewhere, and the second sync of a line,
+  are strays: nothing is measured by them.
 * Lines are counted by pulses, half by half: a distance of two pulses is a whole number of half lines, the nearest.
 
 Where a definition can be read in more than one way, all readings are measured, and any of them will do:
@@ -87,23 +89,58 @@ class Measurement:
 		self.find_fields()
 		self.values = {}    # item to (lowest, highest)
 		self.readings = {}  # item to other such pairs
+		self.begins = {}    # item to a map from its values to the ticks at which they begin
 
 	# ---- pulses, lines and fields
 
 	def classify(self):
-		pulses, count = self.pulses, len(self.pulses)
-		self.distances = [pulses.start(number + 1) - pulses.start(number) for number in range(count)]
-		self.line = Counter(self.distances).most_common(1)[0][0]
-		widths = [pulses.width(number) for number in range(count)]
-		usual = Counter(width for width in widths if 4 * width <= self.line).most_common(1)
-		self.kinds = [SYNC] * count
-		if self.composite:
-			self.kinds = [BROAD if 4 * width > self.line else EQUALISING if 4 * width < 3 * usual[0][0] else SYNC
-				for width in widths]
+		pulses = self.pulses
+		distances = [pulses.start(number + 1) - pulses.start(number) for number in range(len(pulses))]
+		self.line = Counter(distances).most_common(1)[0][0]
+		kinds = self.kinds_of_widths()
+		narrow = {number for number in range(len(pulses)) if kinds[number] == EQUALISING and self.is_alone(number, kinds)}
+		strays = narrow | self.second_syncs(kinds, narrow)
+		kept = [number for number in range(len(pulses)) if number not in strays]
+		self.stray_ticks = [pulses.start(number) for number in sorted(strays)]
+		self.kinds = [kinds[number] for number in kept]
+		self.pulses = pulses = Runs([pulses.runs[number] for number in kept], self.ticks)
+		self.distances = [pulses.start(number + 1) - pulses.start(number) for number in range(len(pulses))]
 		self.halves = [max(1, round(Fraction(2 * distance, self.line))) for distance in self.distances]
 		self.half_at = [0]
 		for halves in self.halves:
 			self.half_at.append(self.half_at[-1] + halves)
+
+	def kinds_of_widths(self):
+		widths = [self.pulses.width(number) for number in range(len(self.pulses))]
+		if not self.composite:
+			return [SYNC] * len(widths)
+		usual = Counter(width for width in widths if 4 * width <= self.line).most_common(1)[0][0]
+		return [BROAD if 4 * width > self.line else EQUALISING if 4 * width < 3 * usual else SYNC for width in widths]
+
+	@staticmethod
+	def is_alone(number, kinds):
+		"""Whether narrow pulses, from this one on in both directions, lead to no broad one."""
+		for step in (1, -1):
+			other = number
+			while kinds[other % len(kinds)] == EQUALISING:
+				other += step
+			if kinds[other % len(kinds)] == BROAD:
+				return False
+		return True
+
+	def second_syncs(self, kinds, narrow):
+		"""Syncs that come too early after a line's."""
+		count, last, found = len(kinds), None, set()
+		for number in range(2 * count):
+			if number % count in narrow:
+				continue
+			is_sync = kinds[number % count] == SYNC
+			if is_sync and last is not None and 4 * (self.pulses.start(number) - last) < 3 * self.line:
+				# The first lap finds out what the frame's last pulse is to its first.
+				found |= {number - count} if number >= count else set()
+			else:
+				last = self.pulses.start(number) if is_sync else None
+		return found
 
 	def kind(self, number):
 		return self.kinds[number % len(self.pulses)]
@@ -164,9 +201,10 @@ class Measurement:
 
 	def rates(self):
 		board, pulses, zero = self.board, self.pulses, self.zero
-		lengths = [pulses.start(number + 1) - pulses.start(number) for number in self.whole_lines()]
-		self.note("line rate", [board.master / length for length in lengths])
-		self.note_cycles("subcarrier cycles per line", lengths)
+		lengths = {pulses.start(number): pulses.start(number + 1) - pulses.start(number) for number in self.whole_lines()}
+		self.note("line rate", [board.master / length for length in lengths.values()])
+		self.note_begins("line rate", [(board.master / length, start) for start, length in lengths.items()])
+		self.note_cycles("subcarrier cycles per line", lengths.values())
 		self.note("pixel clock", [board.master / board.dot])
 		if board.subcarrier:
 			self.note("subcarrier", [board.subcarrier])
@@ -177,8 +215,12 @@ class Measurement:
 			[(self.place(zero.start(field + 1)) - self.place(zero.start(field))) / 2 for field in fields])
 
 	def syncs(self):
-		self.note_times("horizontal sync width",
-			[self.pulses.width(number) for number in range(len(self.pulses)) if self.kind(number) == SYNC])
+		self.note_widths("horizontal sync width", [number for number in range(len(self.pulses)) if self.kind(number) == SYNC])
+
+	def note_widths(self, item, numbers):
+		widths = {self.pulses.start(number): self.pulses.width(number) for number in numbers}
+		self.note_times(item, widths.values())
+		self.note_begins(item, [(width / self.board.master, start) for start, width in widths.items()])
 
 	def has_whole_picture(self, number):
 		"""Whether a normal line begins with that pulse, and has picture in both halves."""
@@ -188,16 +230,21 @@ class Measurement:
 		middle = start + self.line // 2
 		return self.has_picture(start, middle) and self.has_picture(middle, end)
 
-	def note_both(self, item, ticks, others):
-		"""ticks: by the pulse at which the line begins; others: the pulses that the second reading leaves."""
+	def note_both(self, item, ticks, others, begins):
+		"""ticks, begins: by the pulse at which the line begins; others: the pulses that the second reading leaves."""
 		self.note_times(item, ticks.values())
 		self.note_other(item, [ticks[number] / self.board.master for number in ticks if number in others])
+		self.note_begins(item, [(value / self.board.master, begins[number]) for number, value in ticks.items()])
 
 	def note_cycles_of_both(self, item, ticks, others):
 		if self.board.subcarrier:
 			self.note_cycles(item, ticks.values())
 			self.note_other(item,
 				[ticks[number] * self.board.subcarrier / self.board.master for number in ticks if number in others])
+
+	def note_begins(self, item, pairs):
+		for value, tick in pairs:
+			self.begins.setdefault(item, {}).setdefault(value, set()).add(tick % self.ticks)
 
 	def bursts(self):
 		"""Of the bursts in lines that begin with a line's sync: one in each."""
@@ -212,15 +259,24 @@ class Measurement:
 		starts = {key: burst.start(number) - pulses.start(line) for key, (line, number) in found.items()}
 		lengths = {key: burst.width(number) for key, (_, number) in found.items()}
 		normal = set(self.whole_lines())
-		self.note_both("breezeway", {key: burst.start(number) - pulses.end(line) for key, (line, number) in found.items()}, normal)
-		self.note_both("burst start", starts, normal)
+		sync_starts, sync_ends = self.edges()
+		burst_starts = {key: burst.start(number) for key, (_, number) in found.items()}
+		self.note_both("breezeway", {key: burst.start(number) - pulses.end(line) for key, (line, number) in found.items()}, normal,
+			sync_ends)
+		self.note_both("burst start", starts, normal, sync_starts)
 		self.note_cycles_of_both("burst start in cycles", starts, normal)
-		self.note_both("burst length", lengths, normal)
+		self.note_both("burst length", lengths, normal, burst_starts)
 		self.note_cycles_of_both("burst length in cycles", lengths, normal)
 		pictures = dict(self.picture_starts()) if self.blank else {}
 		self.note_both("burst end to picture",
 			{key: pictures[key] - pulses.start(key) - starts[key] - lengths[key] for key in found if key in pictures},
-			{key for key in normal if self.has_whole_picture(key)})
+			{key for key in normal if self.has_whole_picture(key)},
+			{key: burst_starts[key] + lengths[key] for key in found})
+
+	def edges(self):
+		"""Of each pulse, by its number: where it begins and ends."""
+		numbers = range(len(self.pulses))
+		return {number: self.pulses.start(number) for number in numbers}, {number: self.pulses.end(number) for number in numbers}
 
 	def picture_starts(self):
 		"""(number, tick) of each line's sync and the end of its blanking, where it is in the first half of the line."""
@@ -247,17 +303,19 @@ class Measurement:
 		starts, porches = dict(self.picture_starts()), dict(self.front_porches())
 		whole = {number for number in range(len(pulses)) if self.has_whole_picture(number)}
 		after_whole = {(number + 1) % len(pulses) for number in whole}
-		self.note_both("picture start", {number: end - pulses.start(number) for number, end in starts.items()}, whole)
-		self.note_both("back porch", {number: end - pulses.end(number) for number, end in starts.items()}, whole)
-		self.note_both("front porch", porches, after_whole)
-		self.note_both("horizontal blanking", {number: porches[number] + starts[number] - pulses.start(number)
-			for number in starts if number in porches}, whole & after_whole)
+		sync_starts, sync_ends = self.edges()
+		blank_starts = {number: sync_starts[number] - porch for number, porch in porches.items()}
+		self.note_both("picture start", {number: end - pulses.start(number) for number, end in starts.items()}, whole, sync_starts)
+		self.note_both("back porch", {number: end - pulses.end(number) for number, end in starts.items()}, whole, sync_ends)
+		self.note_both("front porch", porches, after_whole, blank_starts)
+		self.note_both("horizontal blanking", {number: starts[number] - blank_starts[number]
+			for number in starts if number in porches}, whole & after_whole, blank_starts)
 		# Pictures of whole lines.
 		ends = {number: end for number, end in starts.items() if self.halves[number] == 2}
 		widths = {number: blank.start(blank.first_from(end)) - end for number, end in ends.items()}
-		self.note_both("picture width", widths, whole)
+		self.note_both("picture width", widths, whole, ends)
 		self.note_both("horizontal centre",
-			{number: end - pulses.start(number) + Fraction(widths[number], 2) for number, end in ends.items()}, whole)
+			{number: end - pulses.start(number) + Fraction(widths[number], 2) for number, end in ends.items()}, whole, sync_starts)
 
 	def vertical_pulses(self):
 		pulses = self.pulses
@@ -267,9 +325,11 @@ class Measurement:
 				self.note("vertical sync length", [(self.place(self.vertical.end(number)) - self.place(self.vertical.start(number))) / 2
 					for number in range(len(self.vertical))])
 			return
-		self.note_times("equalising pulse width", [pulses.width(number) for number in count if self.kind(number) == EQUALISING])
+		self.note_widths("equalising pulse width", [number for number in count if self.kind(number) == EQUALISING])
 		broad = [number for number in count if self.kind(number) == BROAD]
-		self.note_times("broad pulse width", [pulses.width(number) for number in broad])
+		self.note_widths("broad pulse width", broad)
+		self.note_begins("serration width",
+			[((pulses.start(number + 1) - pulses.end(number)) / self.board.master, pulses.end(number)) for number in broad])
 		self.note_times("serration width", [pulses.start(number + 1) - pulses.end(number) for number in broad])
 		blocks = [self.block(first) for first in self.broad_first]
 		self.note("pre-equalising pulses", [zero - first for first, zero, _, _ in blocks])

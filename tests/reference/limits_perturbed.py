@@ -278,6 +278,18 @@ def vertical_longer(shape, frame):
 	return str(shape.width)
 
 
+def stray(narrow):
+	"""In a line that has another after it, so that it is not next to equalising pulses."""
+	def edit(shape, frame):
+		numbers = places(frame, is_full(shape))
+		number = shape.chance.choice([number for number in numbers if number + 1 in numbers])
+		width = shape.sync // 2 if narrow else shape.sync
+		first = shape.chance.randint(shape.geometry.picture + 2, int(1.3 * shape.half))
+		frame[number] = painted(frame[number], sync_name(shape), first, first + width)
+		return str(number)
+	return edit
+
+
 def nothing(shape, frame):
 	return "nothing"
 
@@ -290,6 +302,7 @@ EDITS = {
 	"front porch short": front_porch(-1), "front porch long": front_porch(1), "picture early": picture_start(-1),
 	"picture late": picture_start(1), "picture missing": picture_missing, "line added": line_added, "line longer": line_longer,
 	"line shorter": line_shorter, "vertical sync longer": vertical_longer,
+	"stray narrow": stray(True), "stray like a sync": stray(False),
 }
 
 
@@ -377,7 +390,8 @@ def main(folder, first, count):
 		# No board has so many lines that the pauses of two fields could be the standard's; only where lines are numbered does
 		# that matter.
 		pauses = None if len(measurement.broad_first) == 1 else not measurement.begins_at_a_line()
-		judge.judge(name, board, answer, predicted, measurement.readings, pauses)
+		judge.judge(name, board, answer, predicted, measurement.readings, pauses, *measurement.stray_ticks[:1])
+		judge.judge_places(name, board, answer, measurement.begins)
 
 
 if __name__ == "__main__":

@@ -101,6 +101,15 @@ class Board:
 	def timeline(self):
 		return Timeline(self)
 
+	def tick_of_cell(self):
+		"""The tick at which each cell of the frame begins."""
+		ticks, passed = [], 0
+		for line in self.frame:
+			for signals in line:
+				ticks.append(passed)
+				passed += self.ticks_of(signals)
+		return ticks
+
 	def types(self):
 		"""Each line type once, in order, and for each line of the frame its type's number."""
 		numbers, places, by_id = {}, [], {}

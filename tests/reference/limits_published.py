@@ -136,7 +136,7 @@ class Cases:
 
 def rotated(frame, line, cells):
 	"""The same frame begun at another line and cell."""
-	return [frame[line][cells:]] + frame[line + 1:] + frame[:line] + [frame[line][:cells]]
+	return [part for part in [frame[line][cells:], *frame[line + 1:], *frame[:line], frame[line][:cells]] if part]
 
 
 def smpte(cases):
