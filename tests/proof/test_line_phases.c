@@ -1,5 +1,5 @@
 // Phases at line starts, by hand and against their definition. Sources: S170 = SMPTE 170M-2004; B470 = Rec. ITU-R BT.470-6 (1998);
-// B601 = Rec. ITU-R BT.601-7 (2011). Lines of 912 ticks: common practice, no standard.
+// B601 = Rec. ITU-R BT.601-5 (1995). Lines of 912 ticks: common practice, no standard.
 #include <stdarg.h>
 #include <stddef.h>
 #include <setjmp.h>
