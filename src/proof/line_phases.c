@@ -156,9 +156,7 @@ size_t line_phases_distinct(const struct line_phases *phases, struct fraction va
 {
 	struct rest_list list = {.step = greatest_common_divisor(phases->parts, phases->period_advance)};
 	const int64_t rounds = phases->parts / list.step;
-	if (rounds > PHASES_LISTED)
-		return 0;
-	list.most = PHASES_LISTED / (size_t)rounds;
+	list.most = (size_t)(PHASES_LISTED / rounds);
 	for (uint32_t run = 0; run < phases->run_count; run++)
 		if (!note_run(&list, &phases->runs[run]))
 			return 0;

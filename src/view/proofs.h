@@ -10,7 +10,7 @@
 struct text;
 
 // More runs of lines than that come of faults or of plans beyond use; a manifest stays small.
-#define COLOUR_RUNS 1000
+#define COLOUR_RUNS 256
 
 // Puts a line for each proof, in the order of enum proof_kind: the verdict, the proof's name and its figures in words,
 // wrapped to 100 characters. Verdicts: "pass"; "FAIL", a must that failed; "miss", advice that failed; "none", the plan does

@@ -98,46 +98,57 @@ static void note_step(struct step_list *list, const struct phase_run *run)
 		list->other_lines += run->lines;
 }
 
-// "stays in 248 lines", "advances by 3/4 of a cycle in 14 (line 83 first)", "by 1/4 in 1 (line 90)".
-static void put_step(struct text *out, const struct line_phases *phases, const struct step_list *list, size_t index, uint32_t periods)
+// Of a long fraction it is the decimal that tells a reader something.
+static void put_advance(struct text *out, struct fraction advance)
 {
-	static const char *const units[] = {" of a cycle", ""};
-	const struct step *step = &list->steps[index];
-	const bool advanced = index > 1 || (index == 1 && list->steps[0].advance != 0);
-	text_put(out, index == 0 ? "" : index + 1 == list->count && list->other_lines == 0 ? " and " : ", ");
-	if (step->advance == 0) {
-		text_put(out, "stays");
-	} else {
-		text_put(out, advanced && list->steps[index - 1].advance != 0 ? "by " : "advances by ");
-		text_put_fraction(out, phase_fraction(phases, step->advance));
-		text_put(out, units[advanced]);
-	}
-	text_put(out, " in ");
-	if (index == 0)
-		text_put_count(out, step->lines * periods, "line", "lines");
+	if (advance.denominator < 100)
+		text_put_fraction(out, advance);
 	else
-		text_printf(out, "%" PRIu32 " (line %" PRIu32 "%s)", step->lines * periods, step->first_line,
-		            step->lines * periods == 1 ? "" : " first");
+		text_put_exact(out, advance);
 }
 
-// How lines of several kinds move the phase, counted over the frame, and at which phases they start.
-static void put_steps(struct text *out, const struct line_phases *phases, uint32_t lines)
+// "stays", "advances by 3/4 of a cycle", and shorter where a step before it said as much.
+static void put_move(struct text *out, const struct line_phases *phases, const struct step_list *list, size_t index)
+{
+	const bool goes_on = index > 0 && list->steps[index - 1].advance != 0;
+	if (list->steps[index].advance == 0) {
+		text_put(out, "stays");
+		return;
+	}
+	text_put(out, goes_on ? "by " : "advances by ");
+	put_advance(out, phase_fraction(phases, list->steps[index].advance));
+	text_put(out, goes_on || index > 1 ? "" : " of a cycle");
+}
+
+// How lines of several kinds move the phase, counted over the frame: "stays in 248 lines and advances by 3/4 of a cycle in 14 (line 83
+// first)".
+static void put_steps(struct text *out, const struct line_phases *phases, uint32_t periods)
 {
 	struct step_list list = {.count = 0};
-	struct fraction values[PHASES_LISTED];
-	const uint32_t periods = lines / phases->period_lines;
 	for (uint32_t run = 0; run < phases->run_count; run++)
 		note_step(&list, &phases->runs[run]);
-	for (size_t index = 0; index < list.count; index++)
-		put_step(out, phases, &list, index, periods);
+	for (size_t index = 0; index < list.count; index++) {
+		const struct step *step = &list.steps[index];
+		const uint32_t lines = step->lines * periods;
+		text_put(out, between(index, list.count, list.other_lines > 0 ? ", " : " and "));
+		put_move(out, phases, &list, index);
+		text_put(out, " in ");
+		if (index == 0)
+			text_put_count(out, lines, "line", "lines");
+		else
+			text_printf(out, "%" PRIu32 " (line %" PRIu32 "%s)", lines, step->first_line, lines == 1 ? "" : " first");
+	}
 	if (list.other_lines > 0)
 		text_printf(out, " and otherwise in %" PRIu32, list.other_lines * periods);
+}
+
+// The phases at which lines start, if they are few.
+static void put_starts(struct text *out, const struct line_phases *phases)
+{
+	struct fraction values[PHASES_LISTED];
 	const size_t count = line_phases_distinct(phases, values);
-	if (count == 0)
-		return;
-	text_put(out, "; lines start at ");
 	for (size_t index = 0; index < count; index++) {
-		text_put(out, between(index, count, " or "));
+		text_put(out, index == 0 ? "; lines start at " : between(index, count, " or "));
 		text_put_fraction(out, values[index]);
 	}
 }
@@ -156,7 +167,8 @@ static void put_phases(struct text *out, const struct colour_result *colour, uin
 		put_repeats(out, colour);
 	} else {
 		text_put(out, "the phase ");
-		put_steps(out, phases, lines);
+		put_steps(out, phases, lines / phases->period_lines);
+		put_starts(out, phases);
 		text_put(out, "; the phase ");
 		put_repeats(out, colour);
 	}

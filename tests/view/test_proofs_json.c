@@ -141,7 +141,7 @@ static void figures_that_do_not_fit_are_left_out(void **state)
 		"'start_state':32768,'banks':1}");
 }
 
-// 1000 runs are listed, and how many more there are is said.
+// 256 runs are listed, and how many more there are is said.
 static void runs_of_lines_are_bounded(void **state)
 {
 	(void)state;
@@ -154,16 +154,16 @@ static void runs_of_lines_are_bounded(void **state)
 	*phases = (struct line_phases){4, COLOUR_RUNS, 0, runs, COLOUR_RUNS};
 	json_t *proofs = view_proofs_json(&harbour.proofs);
 	json_t *shown = json_object_get(json_object_get(proofs, "colour"), "phases");
-	assert_int_equal(json_array_size(json_object_get(shown, "runs")), 1000);
+	assert_int_equal(json_array_size(json_object_get(shown, "runs")), 256);
 	assert_null(json_object_get(shown, "more_runs"));
 	json_decref(proofs);
 	phases->run_count = phases->period_lines = COLOUR_RUNS + 2;
 	proofs = view_proofs_json(&harbour.proofs);
 	shown = json_object_get(json_object_get(proofs, "colour"), "phases");
-	assert_int_equal(json_array_size(json_object_get(shown, "runs")), 1000);
+	assert_int_equal(json_array_size(json_object_get(shown, "runs")), 256);
 	assert_int_equal(json_integer_value(json_object_get(shown, "more_runs")), 2);
-	const json_t *last = json_array_get(json_object_get(shown, "runs"), 999);
-	assert_int_equal(json_integer_value(json_object_get(last, "line")), 999);
+	const json_t *last = json_array_get(json_object_get(shown, "runs"), 255);
+	assert_int_equal(json_integer_value(json_object_get(last, "line")), 255);
 	assert_string_equal(json_string_value(json_object_get(last, "phase")), "1/4");
 	assert_string_equal(json_string_value(json_object_get(last, "advance")), "3/4");
 	json_decref(proofs);
