@@ -114,6 +114,17 @@ static uint32_t *count_uses(const struct timeline *timeline, struct arena *arena
 	return uses;
 }
 
+// The cycles of subcarrier in a line, where there is one and they fit a fraction.
+static void put_cycles(struct text *out, const struct clock *clock, int64_t ticks)
+{
+	struct fraction cycles;
+	if (!cycles_of_ticks(clock, ticks, &cycles))
+		return;
+	text_put(out, ", ");
+	text_put_exact(out, cycles);
+	text_put(out, " cycles");
+}
+
 static void put_line(struct text *out, const struct timeline *timeline, size_t type, uint32_t uses)
 {
 	const struct line_view view = {timeline, &timeline->plan->lines[type], &timeline->types[type]};
@@ -125,7 +136,9 @@ static void put_line(struct text *out, const struct timeline *timeline, size_t t
 	text_put_count(out, (uint64_t)view.laid->ticks, "tick", "ticks");
 	text_put(out, ", ");
 	put_microseconds(out, &timeline->plan->clock, fraction_whole(view.laid->ticks));
-	text_put(out, " us; ");
+	text_put(out, " us");
+	put_cycles(out, &timeline->plan->clock, view.laid->ticks);
+	text_put(out, "; ");
 	text_put_count(out, uses, "line", "lines");
 	text_put(out, " of the frame\n");
 	if (view.laid->auto_stretched > 0)

@@ -69,6 +69,7 @@ static json_t *line_json(const struct timeline *timeline, size_t type, uint32_t 
 	const struct laid_line *laid = &timeline->types[type];
 	json_t *object = json_object(), *regions = json_array();
 	uint32_t stretched = 0;
+	struct fraction cycles;
 	for (size_t index = 0; index < line->region_count; index++) {
 		json_append(&regions, region_json(timeline->plan, &line->regions[index], &laid->regions[index]));
 		stretched += laid->regions[index].stretched;
@@ -77,6 +78,8 @@ static json_t *line_json(const struct timeline *timeline, size_t type, uint32_t 
 	json_put(&object, "cells", json_integer(laid->cells));
 	json_put(&object, "ticks", ticks_json(laid->ticks));
 	put_microseconds(&object, "us", &timeline->plan->clock, fraction_whole(laid->ticks));
+	if (cycles_of_ticks(&timeline->plan->clock, laid->ticks, &cycles))
+		json_put_fraction(&object, "cycles", cycles);
 	json_put(&object, "stretched_cells", json_integer(stretched));
 	json_put(&object, "used", json_integer(uses));
 	json_put(&object, "regions", regions);
