@@ -23,6 +23,7 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 //                                 "asked_ticks", "asked_us", "rounding_ticks", "rounding_us" (not of a fill),
 //                                 "asserted": [signal…] } ] } ],
 //     "frame": see view/frame.h,
+//     "stretch_auto": see view/placement.h (only where limits decided it),
 //     "suits_frame_stage": [signals of the line stage that never change within a line] (of a line-frame machine),
 //     "chips": [ { "label", "part", "access_s", "access_ns", "address": [wire…], "data": [wire…] } ]: see view/chips.h,
 //     "proofs": { "colour", "speed" } as in view/proofs.h }
