@@ -6,6 +6,7 @@
 #include "image/image.h"
 #include "layout/timeline.h"
 #include "measure/measure.h"
+#include "proof/line_phases.h"
 
 enum proof_kind {
 	PROOF_CLOSURE,
@@ -68,13 +69,23 @@ struct signals_result {
 	uint64_t held_comparisons; // cells whose held bits were compared
 };
 
+// The first line that does not start in the phase that the plan asks for.
+struct out_of_step {
+	bool present;
+	uint32_t line;             // in its frame
+	int64_t frame;             // 0: the first
+	struct fraction by;        // of a cycle, above 0 and below 1
+};
+
 struct colour_result {
 	bool uniform;              // every line has the same number of cycles
-	struct fraction cycles_per_line;   // of the first line
-	struct fraction cycles_per_frame;
-	bool repeats_known;        // false if the figures do not fit 64 bits
+	struct fraction cycles_per_line;   // of the first line; 0 if it does not fit 64 bits
+	struct fraction cycles_per_frame;  // 0 if it does not fit 64 bits
+	bool repeats_known;        // false if repeats_lines does not fit 64 bits
 	int64_t repeats_lines;     // the phase at line starts repeats after this many lines
 	int64_t repeats_frames;
+	struct line_phases phases; // at the starts of lines
+	struct out_of_step out_of_step;
 };
 
 struct power_up_result {

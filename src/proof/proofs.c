@@ -44,7 +44,7 @@ bool proofs_failed(const struct proofs *proofs, bool strict)
 static void zero_figures(struct proofs *proofs)
 {
 	const struct fraction zero = FRACTION_ZERO;
-	proofs->colour.cycles_per_line = proofs->colour.cycles_per_frame = zero;
+	proofs->colour.cycles_per_line = proofs->colour.cycles_per_frame = proofs->colour.out_of_step.by = zero;
 	proofs->power_up.longest_lines = zero;
 	proofs->upset.mean_cells = proofs->upset.worst_slip_lines = proofs->upset.mean_slip_cells = zero;
 	proofs->glitches.settle_s = zero;

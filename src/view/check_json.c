@@ -1,6 +1,7 @@
 #include <inttypes.h>
 
 #include "base/arena.h"
+#include "layout/placement.h"
 #include "layout/timeline.h"
 #include "proof/proof.h"
 #include "view/check.h"
@@ -8,6 +9,7 @@
 #include "view/divider.h"
 #include "view/figures.h"
 #include "view/frame.h"
+#include "view/placement.h"
 #include "view/proofs.h"
 
 static json_t *ticks_json(int64_t ticks)
@@ -69,6 +71,7 @@ static json_t *line_json(const struct timeline *timeline, size_t type, uint32_t 
 	const struct laid_line *laid = &timeline->types[type];
 	json_t *object = json_object(), *regions = json_array();
 	uint32_t stretched = 0;
+	struct fraction cycles;
 	for (size_t index = 0; index < line->region_count; index++) {
 		json_append(&regions, region_json(timeline->plan, &line->regions[index], &laid->regions[index]));
 		stretched += laid->regions[index].stretched;
@@ -77,6 +80,8 @@ static json_t *line_json(const struct timeline *timeline, size_t type, uint32_t 
 	json_put(&object, "cells", json_integer(laid->cells));
 	json_put(&object, "ticks", ticks_json(laid->ticks));
 	put_microseconds(&object, "us", &timeline->plan->clock, fraction_whole(laid->ticks));
+	if (cycles_of_ticks(&timeline->plan->clock, laid->ticks, &cycles))
+		json_put_fraction(&object, "cycles", cycles);
 	json_put(&object, "stretched_cells", json_integer(stretched));
 	json_put(&object, "used", json_integer(uses));
 	json_put(&object, "regions", regions);
@@ -161,6 +166,8 @@ json_t *view_check_json(const struct timeline *timeline, bool *kept, bool *advic
 	json_put(&object, "divider", view_divider_json(&timeline->plan->clock));
 	json_put(&object, "lines", lines_json(timeline));
 	json_put(&object, "frame", view_frame_json(timeline));
+	if (timeline->placements != NULL && timeline->placements->judged)
+		json_put(&object, "stretch_auto", view_placement_json(timeline));
 	if (timeline->plan->machine.form == FORM_LINE_FRAME)
 		json_put(&object, "suits_frame_stage", suited_json(timeline));
 	json_put(&object, "chips", view_chips_json(timeline->plan));

@@ -89,30 +89,6 @@ static void put_signals(json_t **object, const struct proofs *proofs)
 	json_put(object, "codes", codes_json(proofs));
 }
 
-static json_t *phase_json(const struct clock *clock)
-{
-	struct text words = {0};
-	put_phase(&words, clock);
-	json_t *string = words.failed ? NULL : json_string(text_string(&words));
-	text_release(&words);
-	return string;
-}
-
-static void put_colour(json_t **object, const struct proofs *proofs)
-{
-	const struct colour_result *colour = &proofs->colour;
-	json_put(object, "uniform", truth(colour->uniform));
-	if (colour->cycles_per_line.numerator != 0)
-		json_put_fraction(object, "cycles_per_line", colour->cycles_per_line);
-	if (colour->cycles_per_frame.numerator != 0)
-		json_put_fraction(object, "cycles_per_frame", colour->cycles_per_frame);
-	if (colour->repeats_known) {
-		json_put(object, "repeats_lines", json_integer(colour->repeats_lines));
-		json_put(object, "repeats_frames", json_integer(colour->repeats_frames));
-	}
-	json_put(object, "asked", phase_json(&plan_of(proofs)->clock));
-}
-
 static void put_power_up(json_t **object, const struct proofs *proofs)
 {
 	const struct power_up_result *power_up = &proofs->power_up;
@@ -288,7 +264,7 @@ static void put_figures(json_t **object, const struct proofs *proofs, enum proof
 	switch (kind) {
 	case PROOF_CLOSURE: put_closure(object, proofs); break;
 	case PROOF_SIGNALS: put_signals(object, proofs); break;
-	case PROOF_COLOUR: put_colour(object, proofs); break;
+	case PROOF_COLOUR: json_put_colour(object, proofs); break;
 	case PROOF_POWER_UP: put_power_up(object, proofs); break;
 	case PROOF_UPSET: put_upset(object, proofs); break;
 	case PROOF_LIMITS: json_put_limits(object, proofs); break;
