@@ -15,7 +15,8 @@ trap 'rm -rf "$work"' EXIT
 python=/usr/bin/python3
 export PYTHONDONTWRITEBYTECODE=1
 
-# verdicts AT_LEAST SCRIPT ARGUMENT …: counts what the script says; fewer verdicts than that are a failure of their own.
+# verdicts AT_LEAST SCRIPT ARGUMENT …: counts what the script says; fewer verdicts than that are a failure of their own. What a
+# definition leaves open, and limits that are not judged because numbers do not fit, count neither way, if they are few.
 verdicts() {
 	local at_least=$1 script=$2 line
 	shift 2
@@ -23,10 +24,12 @@ verdicts() {
 	while IFS= read -r line; do
 		case $line in
 		'ok '*) pass ;;
+		'open '*) ;;
 		*) fail "${line#FAILED }" ;;
 		esac
 	done <"$work/said"
 	holds "$script: at least $at_least verdicts" test "$(grep -c '^ok ' "$work/said")" -ge "$at_least"
+	holds "$script: one in 50 is open at most" test "$((50 * $(grep -c '^open ' "$work/said")))" -le "$(grep -c '^ok ' "$work/said")"
 }
 
 said() {
@@ -36,7 +39,7 @@ said() {
 }
 
 verdicts 4000 limits_published.py "$work"
-verdicts $((20 * count)) limits_perturbed.py "$work" "$first" "$count"
+verdicts $((80 * count)) limits_perturbed.py "$work" "$first" "$count"
 
 # The comparison can fail, on both sides.
 said limits_published.py "$work" wrong

@@ -129,7 +129,8 @@ class Judge:
 			self.same(f"{name}: {what}", counts[what], answer.limits[what])
 		self.same(f"{name}: not measured", counts["not measured"], answer.limits["not_measured"])
 		self.same(f"{name}: grade", (board.standard, grade), (answer.limits["standard"], answer.limits["grade"]))
-		self.same(f"{name}: verdict", "fail" if stray_tick is not None or counts["missed"][grade] else "pass", answer.limits["verdict"])
+		fails = stray_tick is not None or counts["missed"][grade] > 0
+		self.same(f"{name}: verdict", "fail" if fails else "pass", answer.limits["verdict"])
 		cell = answer.limits.get("counterexample", {}).get("frame_cell")
 		self.same(f"{name}: stray", stray_tick, None if cell is None else board.tick_of_cell()[cell])
 

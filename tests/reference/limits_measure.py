@@ -178,7 +178,7 @@ class Measurement:
 	def note_other(self, item, values):
 		values = list(values)
 		pair = (Fraction(min(values)), Fraction(max(values))) if values else None
-		if pair != self.values.get(item):
+		if pair != self.values.get(item) and pair not in self.readings.get(item, []):
 			self.readings.setdefault(item, []).append(pair)
 
 	def note_times(self, item, ticks):
@@ -322,8 +322,7 @@ class Measurement:
 		count = range(len(pulses))
 		if not self.composite:
 			if self.vertical:
-				self.note("vertical sync length", [(self.place(self.vertical.end(number)) - self.place(self.vertical.start(number))) / 2
-					for number in range(len(self.vertical))])
+				self.note("vertical sync length", [self.lines_of_vertical(number) for number in range(len(self.vertical))])
 			return
 		self.note_widths("equalising pulse width", [number for number in count if self.kind(number) == EQUALISING])
 		broad = [number for number in count if self.kind(number) == BROAD]
@@ -339,6 +338,9 @@ class Measurement:
 		self.note("post-equalising pulses", [end - after for _, _, after, end in blocks])
 		self.note("post-equalising lines", [
 			Fraction(self.half(end - 1) + 1 - self.half(after), 2) if end > after else 0 for _, _, after, end in blocks])
+
+	def lines_of_vertical(self, number):
+		return (self.place(self.vertical.end(number)) - self.place(self.vertical.start(number))) / 2
 
 	def block(self, zero):
 		"""Numbers of the first equalising, the first broad, the next equalising pulse, and the one after the last of these."""
@@ -398,14 +400,14 @@ class Measurement:
 
 	def sync_end(self, field, here):
 		if not self.composite:
-			return here + self.place(self.vertical.end(field)) - self.place(self.vertical.start(field))
+			return here + 2 * self.lines_of_vertical(field)
 		zero = self.broad_first[field]
 		return self.half(self.block(zero)[2])
 
 	# ---- burst in the lines around 0V
 
 	def line_parity(self):
-		"""0 or 1: of the half lines, from the frame's first pulse on, every second one begins a line: one at which line syncs are."""
+		"""0 or 1: which half lines, from the frame's first pulse on, begin lines: those at which line syncs are."""
 		syncs = Counter(self.half(number) % 2 for number in range(len(self.pulses)) if self.kind(number) == SYNC)
 		return int(syncs[1] > syncs[0])
 

@@ -3,7 +3,7 @@
 
 	limits_perturbed.py FOLDER FIRST COUNT      one board for each seed; plans are written to FOLDER
 
-Half of the boards are left as they are in what they do not measure by: cells of some ticks, stretched cells, leads, both levels.
+Boards differ in all that a plan can say: one or two fields, one or two syncs, cells of some ticks, stretched cells, leads, levels.
 """
 
 import os
@@ -142,11 +142,10 @@ def sync_name(shape):
 
 def is_full(shape):
 	"""Lines with picture in both halves, that begin with sync."""
-	return lambda line: len(line) == shape.line and not has(line, "vsync") and sum("blank" not in signals for signals in line) > shape.half
-
-
-def is_normal(shape):
-	return lambda line: len(line) == shape.line and abs(extent(line, sync_name(shape))[1] - shape.sync) < 2
+	def wanted(line):
+		picture = sum("blank" not in signals for signals in line)
+		return len(line) == shape.line and not has(line, "vsync") and picture > shape.half
+	return wanted
 
 
 def sync_wider(shape, frame):

@@ -37,8 +37,8 @@ def pulses_525(clock, sync, equalising, broad, serration):
 		"line rate": Fraction(4_500_000, 286),  # S170 11.2
 		"pre-equalising pulses": 6, "pre-equalising lines": 3, "broad pulses": 6, "vertical sync length": 3,
 		"post-equalising pulses": 6, "post-equalising lines": 3,
-		"horizontal sync width": sync / clock, "equalising pulse width": equalising / clock, "broad pulse width": broad / clock,
-		"serration width": serration / clock,
+		"horizontal sync width": sync / clock, "equalising pulse width": equalising / clock,
+		"broad pulse width": broad / clock, "serration width": serration / clock,
 		"vertical blanking": 20, "picture top": 17, "picture height": Fraction(485, 2), "vertical centre": 17 + Fraction(485, 4),
 	}
 
@@ -49,8 +49,8 @@ def pulses_625(clock, sync, equalising, broad, serration):
 		"line rate": 15625, "field rate": 50, "lines per field": Fraction(625, 2),  # B470 table 1
 		"pre-equalising pulses": 5, "pre-equalising lines": Fraction(5, 2), "broad pulses": 5,
 		"vertical sync length": Fraction(5, 2), "post-equalising pulses": 5, "post-equalising lines": Fraction(5, 2),
-		"horizontal sync width": sync / clock, "equalising pulse width": equalising / clock, "broad pulse width": broad / clock,
-		"serration width": serration / clock,
+		"horizontal sync width": sync / clock, "equalising pulse width": equalising / clock,
+		"broad pulse width": broad / clock, "serration width": serration / clock,
 		"vertical blanking": 25, "picture top": Fraction(45, 2), "picture height": Fraction(575, 2),
 		"vertical centre": Fraction(45, 2) + Fraction(575, 4),
 	}
@@ -59,8 +59,8 @@ def pulses_625(clock, sync, equalising, broad, serration):
 def along_the_line(clock, line, sync, front_porch, picture):
 	width = line - front_porch - picture
 	return {
-		"front porch": front_porch / clock, "picture start": picture / clock, "horizontal blanking": (front_porch + picture) / clock,
-		"back porch": (picture - sync) / clock, "picture width": width / clock,
+		"front porch": front_porch / clock, "picture start": picture / clock,
+		"horizontal blanking": (front_porch + picture) / clock, "back porch": (picture - sync) / clock, "picture width": width / clock,
 		"horizontal centre": (picture + Fraction(width, 2)) / clock,
 	}
 
@@ -319,7 +319,8 @@ def common_practice(cases):
 			missed += ["line rate", "subcarrier cycles per line"]
 		answer = cases.hold(board, figures, missed, pauses=False)
 		if answer and samples == 912:
-			cases.judge.same(f"{board.name}: line rate to two places", "15699.76", f"{answer.items['line rate']['low_rounded']:.2f}")
+			found = f"{answer.items['line rate']['low_rounded']:.2f}"
+			cases.judge.same(f"{board.name}: line rate to two places", "15699.76", found)
 
 
 def wrong(cases):

@@ -1,7 +1,5 @@
 """Frames of composite sync, half line by half line, with the counts and places that standards of television have."""
 
-from fractions import Fraction
-
 from limits_plan import painted
 
 
@@ -82,7 +80,3 @@ def frame_of(system, geometry, burst_lines=(), other=None):
 			kept[key] = [cells[:shape.half], cells[shape.half:]] if is_cut else [cells]
 		lines += kept[key]
 	return lines
-
-
-def microseconds(text):
-	return Fraction(text) / 10**6
