@@ -116,7 +116,7 @@ class Judge:
 				continue
 			kept = limit.keeps(*values) if values else None
 			if item == "lines without burst" and grade == "studio" and kept is not None:
-				kept = kept and (answer.limits["burst_pauses_kept"] if pauses is None else pauses)
+				kept = kept and (answer.limits.get("burst_pauses_kept", True) if pauses is None else pauses)
 			if found is None and kept is not None and not limit.fits(*values):
 				print(f"open {name}: {grade} kept: not judged, as numbers do not fit")
 				kept = None

@@ -4,7 +4,7 @@ All is exact: ticks are whole, values fractions in seconds, hertz, lines, cycles
 decided here as follows:
 
 * Of the pulses of composite sync, a broad one is longer than a quarter of a line, an equalising one shorter than three quarters
-  of the usual sync, and any other is a line's sync. A line is the commonest distance of two pulses.
+  of the usual sync, and any other is a line's sync. A line is the distance of two pulses that takes the most of the time.
 * A normal line begins with a line's sync, and so does the pulse after it.
 * Equalising pulses go with broad ones, next to them or to others that do. A narrow pulse elsewhere, and the second sync of a line,
   are strays: nothing is measured by them.
@@ -16,6 +16,7 @@ Where a definition can be read in more than one way, all readings are measured, 
   with picture only where picture is in the line's first half; or in normal lines alone, and only if both halves have picture.
 * The picture's height: lines that have picture; or all from the first to the last that has. Vertical blanking: lines without
   picture from one 0V to the next; or all between the last picture before 0V and the first after it.
+* The second half of a line begins amid it; or half a usual line, in whole ticks, after its 0H. Lines may be longer than usual.
 * A line without burst far from 0V: of the field that it is in; or of the nearest 0V.
 """
 
@@ -96,7 +97,7 @@ class Measurement:
 	def classify(self):
 		pulses = self.pulses
 		distances = [pulses.start(number + 1) - pulses.start(number) for number in range(len(pulses))]
-		self.line = Counter(distances).most_common(1)[0][0]
+		self.line = max(set(distances), key=lambda distance: distance * distances.count(distance))
 		kinds = self.kinds_of_widths()
 		narrow = {number for number in range(len(pulses)) if kinds[number] == EQUALISING and self.is_alone(number, kinds)}
 		strays = narrow | self.second_syncs(kinds, narrow)
