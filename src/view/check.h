@@ -8,8 +8,8 @@
 struct text;
 struct timeline;
 
-// Puts the report of `check` for a terminal. *kept (may be NULL): colour is what the plan demands; *advice_kept (may be NULL): limits and speed
-// suffices. False when memory is out.
+// Puts the report of `check` for a terminal. *kept (may be NULL): colour is what the plan demands; *advice_kept (may be NULL): limits are kept and
+// the speed suffices. False when memory is out.
 bool view_check(struct text *out, const struct timeline *timeline, bool *kept, bool *advice_kept);
 
 // The same as
