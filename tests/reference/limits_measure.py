@@ -5,7 +5,7 @@ decided here as follows:
 
 * Of the pulses of composite sync, a broad one is longer than a quarter of a line, an equalising one shorter than three quarters
   of the usual sync, and any other is a line's sync. A line is the distance of two pulses that takes the most of the time.
-* A normal line begins with a line's sync, and so does the pulse after it.
+* A normal line begins with a line's sync, and a pulse of any kind comes a line after it.
 * Equalising pulses go with broad ones, next to them or to others that do. A narrow pulse elsewhere, and the second sync of a line,
   are strays: nothing is measured by them.
 * Lines are counted by pulses, half by half: a distance of two pulses is a whole number of half lines, the nearest.
@@ -16,7 +16,8 @@ Where a definition can be read in more than one way, all readings are measured, 
   with picture only where picture is in the line's first half; or in normal lines alone, and only if both halves have picture.
 * The picture's height: lines that have picture; or all from the first to the last that has. Vertical blanking: lines without
   picture from one 0V to the next; or all between the last picture before 0V and the first after it.
-* The second half of a line begins amid it; or half a usual line, in whole ticks, after its 0H. Lines may be longer than usual.
+* The second half of a line begins amid it; or half a usual line after its 0H, and what is within 1/16 of a line of there counts for
+  neither half. Lines may be longer than usual.
 * A line without burst far from 0V: of the field that it is in; or of the nearest 0V.
 """
 
@@ -167,7 +168,14 @@ class Measurement:
 
 	def whole_lines(self):
 		"""Numbers of the pulses at which normal lines begin."""
-		return [number for number in range(len(self.pulses)) if self.kind(number) == self.kind(number + 1) == SYNC]
+		return [number for number in range(len(self.pulses)) if self.kind(number) == SYNC and self.line_after(number) is not None]
+
+	def line_after(self, number):
+		"""The number of the pulse a line after one; None if there is none."""
+		first = self.halves[number % len(self.halves)]
+		if first == 2 or self.kind(number + 1) == SYNC:
+			return number + 1
+		return number + 2 if first == self.halves[(number + 1) % len(self.halves)] == 1 else None
 
 	# ---- items
 
@@ -202,7 +210,8 @@ class Measurement:
 
 	def rates(self):
 		board, pulses, zero = self.board, self.pulses, self.zero
-		lengths = {pulses.start(number): pulses.start(number + 1) - pulses.start(number) for number in self.whole_lines()}
+		lengths = {pulses.start(number): pulses.start(self.line_after(number)) - pulses.start(number)
+			for number in self.whole_lines()}
 		self.note("line rate", [board.master / length for length in lengths.values()])
 		self.note_begins("line rate", [(board.master / length, start) for start, length in lengths.items()])
 		self.note_cycles("subcarrier cycles per line", lengths.values())
@@ -225,11 +234,11 @@ class Measurement:
 
 	def has_whole_picture(self, number):
 		"""Whether a normal line begins with that pulse, and has picture in both halves."""
-		if self.kind(number) != SYNC or self.kind(number + 1) != SYNC or not self.blank:
+		if self.kind(number) != SYNC or self.line_after(number) is None or not self.blank:
 			return False
-		start, end = self.pulses.start(number), self.pulses.start(number + 1)
-		middle = start + self.line // 2
-		return self.has_picture(start, middle) and self.has_picture(middle, end)
+		start, end = self.pulses.start(number), self.pulses.start(self.line_after(number))
+		return self.has_picture(start, start + Fraction(7 * self.line, 16)) and \
+			self.has_picture(start + Fraction(9 * self.line, 16), end)
 
 	def note_both(self, item, ticks, others, begins):
 		"""ticks, begins: by the pulse at which the line begins; others: the pulses that the second reading leaves."""
@@ -289,10 +298,11 @@ class Measurement:
 					yield number, end
 
 	def front_porches(self):
-		"""By the pulse that ends the porch, where picture comes before it."""
-		for number in range(len(self.pulses)):
+		"""By the pulse that ends the porch and a normal line, where picture comes before it."""
+		ends = {self.line_after(number) % len(self.pulses) for number in self.whole_lines()}
+		for number in sorted(ends):
 			start = self.pulses.start(number)
-			if self.kind(number) == SYNC and self.blank.covers(start):
+			if self.blank.covers(start):
 				begin = self.blank.start(self.blank.last_from(start))
 				if begin > self.pulses.start(number - 1):
 					yield number, start - begin
@@ -303,7 +313,7 @@ class Measurement:
 		pulses, blank = self.pulses, self.blank
 		starts, porches = dict(self.picture_starts()), dict(self.front_porches())
 		whole = {number for number in range(len(pulses)) if self.has_whole_picture(number)}
-		after_whole = {(number + 1) % len(pulses) for number in whole}
+		after_whole = {self.line_after(number) % len(pulses) for number in whole}
 		sync_starts, sync_ends = self.edges()
 		blank_starts = {number: sync_starts[number] - porch for number, porch in porches.items()}
 		self.note_both("picture start", {number: end - pulses.start(number) for number, end in starts.items()}, whole, sync_starts)
@@ -356,13 +366,19 @@ class Measurement:
 		return first, zero, after, end
 
 	def half_lines(self, nominal=False):
-		"""(start, end) of each half line of the frame, from its first pulse on: a distance of pulses is parted evenly, or into half
-		lines of the usual length, in whole ticks, and a rest."""
+		"""(start, end) of each half line of the frame, from its first pulse on: a distance of pulses is parted evenly; or what of
+		half a line of the usual length is not near the line's middle."""
 		for number, count in enumerate(self.halves):
 			start, distance = self.pulses.start(number), self.distances[number]
-			part = self.line // 2 if nominal else Fraction(distance, count)
+			part = Fraction(self.line, 2) if nominal else Fraction(distance, count)
 			edges = [start + part * index for index in range(count)] + [start + distance]
-			yield from zip(edges, edges[1:])
+			for index, (begin, end) in enumerate(zip(edges, edges[1:])):
+				if not nominal:
+					yield begin, end
+				elif (self.half(number) + index) % 2 == self.line_parity():
+					yield begin, begin + Fraction(7 * self.line, 16)
+				else:
+					yield begin + Fraction(self.line, 16), end
 
 	def has_picture(self, start, end):
 		number = self.picture.last_from(start)
