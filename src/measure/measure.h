@@ -34,7 +34,7 @@ struct measurement {
 	struct measured items[ITEM_COUNT];
 	bool separate;                 // sync is horizontal and vertical
 	uint32_t frames;               // that were measured: 2 if the frame has an odd number of half lines
-	uint64_t strays;               // sync pulses that belong to nothing, in those frames
+	uint64_t strays;               // sync pulses of a frame that belong to nothing
 	uint32_t stray_cell;           // where the first begins
 	const struct measured_field *fields; // [field_count], from the first 0V after the frame's first normal line
 	uint32_t field_count;

@@ -29,7 +29,8 @@ struct line_view {
 };
 
 struct instrument {
-	struct arena *arena;
+	struct arena *arena;           // its own, gone when all is measured
+	struct arena *results;         // the caller's
 	const struct standard *standard;
 	const struct trace *trace;
 	struct raster raster;

@@ -49,11 +49,11 @@ static const struct kinds_case cases[] = {
 	{{"ssss", "ssss", "ssssssss", "ssss"}, "NNBN"},
 	// Narrow ones next to broad ones are equalising, on either side, as far as they go on.
 	{{"ssss", "ssss", "ss", "ss", "ssssssss", "ssssssss", "ss", "ssss", "ssss", "ss", "ssss"}, "NNEEBBENNSN"},
-	{{"ssssssss", "ss", "ssss", "ssss", "ss"}, "BENNE"},
-	{{"ss", "ssss", "ssss", "ss", "ssssssssssssss"}, "ENNEB"},
+	{{"ssssssss", "ss", "ssss", "ssss", "ssss", "ss"}, "BENNNE"},
+	{{"ss", "ssss", "ssss", "ssss", "ss", "ssssssssssssss"}, "ENNNEB"},
 	// As wide as normal ones, but half a line from both neighbours: the last before a half line distance and the first after are normal.
-	{{"ssss", "ssss------------ssss", "ssss------------ssssssss", "ssssssss--------ssss", "ssss------------ssss", "ssss", "ssss"},
-	 "NNEEBBEEENN"},
+	{{"ssss", "ssss------------ssss", "ssss------------ssssssss", "ssssssss--------ssss", "ssss------------ssss", "ssss", "ssss", "ssss",
+	  "ssss"}, "NNEEBBEEENNNN"},
 	// Half a line apart but next to no broad pulse, each second one is a stray; and so is the second of a line wherever it comes, up to
 	// three quarters of it. A pulse that comes later begins a line.
 	{{"ssss", "ssss------------ssss", "ssss", "ssss"}, "NNSNN"},
