@@ -97,16 +97,17 @@ static void kinds_by_width(struct raster *raster, int64_t normal)
 	}
 }
 
-static bool is_near(const struct raster *raster, uint32_t index)
+static bool half_a_line_on(const struct raster *raster, uint32_t index)
 {
-	return ticks_to_next(raster->trace, index) * 4 < raster->line_ticks * 3;
+	const int64_t twice = 2 * ticks_to_next(raster->trace, index);
+	return twice * 8 >= raster->line_ticks * 7 && twice * 8 <= raster->line_ticks * 9;
 }
 
 // Whether a pulse, next to a broad or equalising one, is equalising too: narrow, or amid pulses half a line apart.
 static bool is_equalising(const struct raster *raster, uint32_t index)
 {
 	if (raster->kinds[index] == PULSE_NORMAL)
-		return is_near(raster, index) && is_near(raster, pulse_before(raster->trace, index));
+		return half_a_line_on(raster, index) && half_a_line_on(raster, pulse_before(raster->trace, index));
 	return raster->kinds[index] == PULSE_STRAY;
 }
 

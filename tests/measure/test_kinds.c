@@ -60,9 +60,16 @@ static const struct kinds_case cases[] = {
 	{{"ssss", "ssss-------------------ssss", "ssss", "ssss"}, "NNSNN"},
 	{{"ssss", "ssss----ssss----ssss", "ssss", "ssss"}, "NNSSNN"},
 	{{"ssss", "ssss--------------------ssss", "ssss", "ssss", "ssss"}, "NNNSNN"},
-	// A pulse that comes early after a broad or an equalising one is no second in its line.
+	// A pulse that comes early after a broad one is no second in its line; one that comes early after that is.
 	{{"ssss", "ssss", "ssssssss--------ssss", "ssss", "ssss"}, "NNBENN"},
-	{{"ssss", "ssss", "ssssssss------------ssss", "ssss", "ssss"}, "NNBENN"},
+	{{"ssss", "ssss", "ssssssss------------ssss", "ssss", "ssss"}, "NNBNSN"},
+	// A pulse is half a line from both its neighbours within a sixteenth of a line, two cells.
+	{{"ssss", "ssss", "ssssssss----------ssss", "ssss", "ssss"}, "NNBENN"},
+	{{"ssss", "ssss", "ssssssss-----------ssss", "ssss", "ssss"}, "NNBNSN"},
+	{{"ssss", "ssss", "ssssssss------ssss", "ssss", "ssss"}, "NNBENN"},
+	{{"ssss", "ssss", "ssssssss-----ssss", "ssss", "ssss"}, "NNBNSN"},
+	// So that two strays of a line before the vertical interval are none of its pulses.
+	{{"ssss", "ssss------ssss", "ssss------ssss", "ssssssss", "ssss", "ssss"}, "NNSNSBNN"},
 };
 
 static void kinds_by_width_and_neighbours(void **state)
