@@ -7,8 +7,9 @@ them is written as a plan of its own with `stretch: N`, N cells from a region's 
 `check --json`. Of these the best by design page 2.5 is taken (most limits kept, then the largest smallest margin, then leftmost), and
 the second best, and compared with what the program chose for `stretch: auto`. Prints a line for each seed: "ok SEED …" or "bad SEED …".
 
-A limit has a say in the smallest margin only where some way moves what it measures. All line types with horizontal sync are alike
-but for their picture, so that an item moves in all of them or in none.
+A limit has a say in the smallest margin only where some way moves what it measures. The program has it so for each line on its own. All
+line types with horizontal sync are marked alike here, and lines of two types with picture do not follow each other, so that an item moves in
+all its lines or in none, and that it moves can be seen in its lowest and highest value.
 """
 
 import json
@@ -163,7 +164,8 @@ class Plan:
 				how = "auto" if counts is None and marked else stretched.get((name, index), 0)
 				text.append(f"      - {{ region: {region}, cells: {cells}, assert: [{', '.join(signals.split())}], stretch: {how} }}")
 		text.append("frame:")
-		text += [f"  - {{ repeat: {3 if name == 'broad' else 9}, line: {name} }}" for name in self.lines]
+		for name in self.lines:
+			text += [f"  - {{ repeat: {3 if name == 'broad' else 9}, line: {name} }}", "  - { repeat: 1, line: border }"]
 		return "\n".join(text) + "\nmachine: { form: loop, state: 13 bits }\nchips: { part: 28C64 }\n"
 
 

@@ -33,5 +33,5 @@ at_least $((count / 4)) ' monitor '
 at_least $((count / 4)) ' accuracy '
 at_least $((count / 5)) '; 1 cells'
 at_least $((count / 5)) '; 2 cells'
-at_least $((count / 6)) '; 3 cells'
+at_least $((count / 8)) '; 3 cells'
 finish
