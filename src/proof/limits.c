@@ -12,8 +12,8 @@ struct setting {
 };
 
 static const struct setting settings[ITEM_COUNT] = {
-	[ITEM_LINE_RATE] = {MOVE_LENGTH, false, 1}, // of the period
-	[ITEM_CYCLES_PER_LINE] = {MOVE_LENGTH, false, 1},
+	[ITEM_LINE_RATE] = {MOVE_LENGTH, true, 1}, // of the period
+	[ITEM_CYCLES_PER_LINE] = {MOVE_LENGTH, true, 1},
 	[ITEM_FRONT_PORCH] = {MOVE_EDGE, true, -1},
 	[ITEM_SYNC_WIDTH] = {MOVE_EDGE, false, 1},
 	[ITEM_BREEZEWAY] = {MOVE_EDGE, false, 1},

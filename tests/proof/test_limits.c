@@ -160,10 +160,10 @@ static const struct moved moves[] = {
 	{"", ITEM_HORIZONTAL_CENTRE, "at least 115 us", MOVE_PICTURE, 2, 38, "120", "120"},
 	{"", ITEM_HORIZONTAL_CENTRE, "at most 99 us", MOVE_PICTURE, -1, 38, "90", "90"},
 	// Lines are 160 us, 6.25 kHz: for less they must be longer.
-	{"", ITEM_LINE_RATE, "at most 6 kHz", MOVE_LENGTH, 1, 32, "170", "170"},
-	{"", ITEM_LINE_RATE, "0 Hz to 6 kHz", MOVE_LENGTH, 1, 32, "170", "170"},
-	{"", ITEM_LINE_RATE, "at least 6.5 kHz", MOVE_LENGTH, -1, 32, "150", "150"},
-	{"", ITEM_CYCLES_PER_LINE, "exactly 22.5 cycles", MOVE_LENGTH, 2, 32, "45/2", "45/2"},
+	{"", ITEM_LINE_RATE, "at most 6 kHz", MOVE_LENGTH, 1, 16, "170", "170"},
+	{"", ITEM_LINE_RATE, "0 Hz to 6 kHz", MOVE_LENGTH, 1, 16, "170", "170"},
+	{"", ITEM_LINE_RATE, "at least 6.5 kHz", MOVE_LENGTH, -1, 16, "150", "150"},
+	{"", ITEM_CYCLES_PER_LINE, "exactly 22.5 cycles", MOVE_LENGTH, 2, 16, "45/2", "45/2"},
 	{"", ITEM_CYCLES_PER_LINE, "exactly 22 cycles", MOVE_NONE, 0, 0, NULL, NULL},
 	// Nothing that edges of cells set.
 	{"", ITEM_VERTICAL_BLANKING, "at least 5 lines", MOVE_NONE, 0, 0, NULL, NULL},
@@ -171,8 +171,8 @@ static const struct moved moves[] = {
 	// 1 % of accuracy: 20 us may be 20/1.01; 30 us would be kept but for it, and so a second cell is asked.
 	{", accuracy: 10000 ppm", ITEM_SYNC_WIDTH, "at least 29.9 us", MOVE_EDGE, 2, 18, "4000/101", "4000/99"},
 	{", accuracy: 10000 ppm", ITEM_SYNC_WIDTH, "at least 29 us", MOVE_EDGE, 1, 18, "1000/33", "1000/33"},
-	{", accuracy: 10000 ppm", ITEM_LINE_RATE, "at most 6 kHz", MOVE_LENGTH, 1, 32, "17000/101", "17000/99"},
-	{", accuracy: 10000 ppm", ITEM_CYCLES_PER_LINE, "at least 21 cycles", MOVE_LENGTH, 1, 32, "85/4", "85/4"},
+	{", accuracy: 10000 ppm", ITEM_LINE_RATE, "at most 6 kHz", MOVE_LENGTH, 1, 16, "17000/101", "17000/99"},
+	{", accuracy: 10000 ppm", ITEM_CYCLES_PER_LINE, "at least 21 cycles", MOVE_LENGTH, 1, 16, "85/4", "85/4"},
 	// A fifth: each cell of the 13 that 20 us need to be 120 even where the clock is fast counts for 8.3 us.
 	{", accuracy: 200000 ppm", ITEM_SYNC_WIDTH, "at least 120 us", MOVE_EDGE, 13, 18, "125", "375/2"},
 	// What the accuracy alone makes too wide no shift mends.
