@@ -206,8 +206,7 @@ static void lines_without_burst_by_number(void **state)
 		"lines without burst  lines         2        2    2     2       0  MISSED  -\n"
 		"lines without burst, by the standard's numbers: 4 to 5; the standard has others\n");
 	assert_proof(&board,
-		"miss  limits    quay: 0 of 1 limits kept at studio grade; no limit was judged at monitor\n"
-		"                grade\n"
+		"miss  limits    quay: 0 of 1 limits kept at studio grade; no limit was judged at monitor grade\n"
 		"      lines without burst is 2 lines, allowed 2 lines, but they are not those that the standard has;\n"
 		"        at line 0 (broad), cell 0 (sync)\n");
 	release(&board);
