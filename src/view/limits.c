@@ -33,7 +33,7 @@ static void put_value(struct text *out, enum limit_item item, struct fraction va
 	if (facts->is_polarity)
 		put_limit_value(out, item, value);
 	else if (limit_value_in_unit(item, value, &scaled))
-		text_put_rounded(out, scaled, strcmp(facts->unit, "MHz") == 0 ? 6 : 3);
+		text_put_rounded(out, scaled, facts->dimension == DIMENSION_FREQUENCY ? 6 : 3);
 	else
 		text_put(out, "?");
 }
@@ -306,16 +306,14 @@ static bool is_too_low(const struct proofs *proofs, const struct limit *limit)
 	       fraction_compare(above, row->grades[limit->grade].judgement.margin) == 0;
 }
 
-// Where an exact clock would keep the limit, what the accuracy makes of the value.
+// Where an exact clock would keep the limit: what misses it is the accuracy.
 static void put_accuracy(struct text *out, const struct proofs *proofs, const struct limit *limit)
 {
 	struct judgement exact;
 	const struct limit_row *row = &proofs->limits.rows[limit->item];
 	if (!row->widened || !limit_judge(limit, proofs->limits.measurement->items[limit->item].values, &exact) || !exact.kept)
 		return;
-	text_put(out, " (");
-	put_interval_unit(out, limit->item, row->values);
-	text_put(out, " with the clock's accuracy)");
+	text_put(out, " by an exact clock");
 }
 
 static void put_miss_by(struct text *out, const struct proofs *proofs, const struct limit *limit)
