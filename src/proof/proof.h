@@ -129,7 +129,7 @@ struct limit_verdict {
 	struct judgement judgement;
 	enum limit_move move;
 	int64_t move_cells;        // later if positive; of lines: longer
-	uint32_t move_cell;        // of the frame: where the edge is, or the picture begins
+	uint32_t move_cell;        // of the frame: where the edge is, the picture begins, or a line that is too short or too long
 	struct interval moved;     // what would be measured then, accuracy included
 };
 
