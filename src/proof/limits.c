@@ -208,6 +208,20 @@ static bool flaw_fails(struct trial *trial, const char *flaw)
 	return reason != NULL;
 }
 
+static bool limit_binds(const struct plan *plan, enum limit_item item)
+{
+	const struct limit *limit = standard_limit(plan->standard, item, plan->grade);
+	return limit != NULL && (limit->has_low || limit->has_high);
+}
+
+// A monitor that never sees a field begin shows nothing that stands still.
+static bool lacks_vertical_sync(const struct plan *plan, const struct measurement *measurement)
+{
+	return measurement->flaw == NULL && measurement->field_count == 0 &&
+	       (!measurement->separate || plan->role_signal[ROLE_VERTICAL_SYNC] >= 0) &&
+	       (limit_binds(plan, ITEM_FIELD_RATE) || limit_binds(plan, ITEM_FRAME_RATE));
+}
+
 static const struct measurement *measure_trial(const struct trial *trial)
 {
 	const struct timeline *timeline = trial->timeline;
@@ -240,7 +254,8 @@ bool prove_limits(struct trial *trial)
 		return false;
 	if (limits.measurement->strays > 0 && !strays_fail(trial, limits.measurement))
 		return false;
-	if (limits.missed[plan->grade] > 0)
+	limits.no_vertical_sync = lacks_vertical_sync(plan, limits.measurement);
+	if (limits.missed[plan->grade] > 0 || limits.no_vertical_sync)
 		proof->verdict = VERDICT_FAIL;
 	if (trial->first || (proof->verdict == VERDICT_FAIL && !failed_before))
 		trial->proofs->limits = limits;

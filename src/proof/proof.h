@@ -142,6 +142,7 @@ struct limit_row {
 struct limits_result {
 	const struct measurement *measurement; // NULL without a standard, or if the frame does not close
 	struct limit_row rows[ITEM_COUNT];
+	bool no_vertical_sync;     // though there is a signal for it, and the standard asks for a rate of fields or frames
 	unsigned kept[GRADE_COUNT], missed[GRADE_COUNT], unknown[GRADE_COUNT]; // limits that bind
 };
 

@@ -297,6 +297,23 @@ static void pauses_count_at_studio_grade(void **state)
 	}
 }
 
+// Only where the standard asks for a rate of fields, and there is a signal that could show it.
+static void no_vertical_sync_is_a_miss(void **state)
+{
+	(void)state;
+	static const char frame[] = "frame: [ { repeat: 1, line: plain }, { repeat: 2, line: picture } ]\n";
+	struct board *board = board_of("", SIGNALS, frame, "{ part: 28C64 }");
+	add_limit(board, ITEM_SYNC_WIDTH, GRADE_STUDIO, "at least 1 us");
+	assert_false(judge(board)->no_vertical_sync);
+	assert_int_equal(board->proofs->proof[PROOF_LIMITS].verdict, VERDICT_PASS);
+	release(board);
+	board = board_of("", SIGNALS, frame, "{ part: 28C64 }");
+	add_limit(board, ITEM_FIELD_RATE, GRADE_STUDIO, "at least 1 Hz");
+	assert_true(judge(board)->no_vertical_sync);
+	assert_int_equal(board->proofs->proof[PROOF_LIMITS].verdict, VERDICT_FAIL);
+	release(board);
+}
+
 static void strays_are_a_miss(void **state)
 {
 	(void)state;
@@ -451,6 +468,7 @@ int main(void)
 		cmocka_unit_test(what_is_unknown_is_not_missed),
 		cmocka_unit_test(widened_by_the_accuracy),
 		cmocka_unit_test(pauses_count_at_studio_grade),
+		cmocka_unit_test(no_vertical_sync_is_a_miss),
 		cmocka_unit_test(strays_are_a_miss),
 		cmocka_unit_test(without_a_raster_nothing_is_judged),
 		cmocka_unit_test(without_a_standard_there_is_nothing_to_prove),
