@@ -25,21 +25,17 @@ static const struct limit *limit_at(const struct proofs *proofs, enum limit_item
 	return standard_limit(plan_of_proofs(proofs)->standard, item, grade);
 }
 
-static void put_decimals(struct text *out, enum limit_item item, struct fraction value, unsigned decimals)
-{
-	struct fraction scaled;
-	if (limit_item_facts(item)->is_polarity)
-		put_limit_value(out, item, value);
-	else if (limit_value_in_unit(item, value, &scaled))
-		text_put_rounded(out, scaled, decimals);
-	else
-		text_put(out, "?");
-}
-
 // Values at 3 decimals, as times are everywhere; frequencies at 6.
 static void put_value(struct text *out, enum limit_item item, struct fraction value)
 {
-	put_decimals(out, item, value, strcmp(limit_item_facts(item)->unit, "MHz") == 0 ? 6 : 3);
+	struct fraction scaled;
+	const struct limit_item_facts *facts = limit_item_facts(item);
+	if (facts->is_polarity)
+		put_limit_value(out, item, value);
+	else if (limit_value_in_unit(item, value, &scaled))
+		text_put_rounded(out, scaled, strcmp(facts->unit, "MHz") == 0 ? 6 : 3);
+	else
+		text_put(out, "?");
 }
 
 static void put_interval(struct text *out, enum limit_item item, struct interval values)
@@ -225,9 +221,7 @@ void view_limits(struct text *out, const struct proofs *proofs)
 static void put_grade_counts(struct text *out, const struct limits_result *limits, enum limit_grade grade)
 {
 	const unsigned judged = limits->kept[grade] + limits->missed[grade];
-	if (judged == 0)
-		text_printf(out, "no limits measured at %s grade", limit_grade_name(grade));
-	else if (limits->missed[grade] == 0)
+	if (limits->missed[grade] == 0)
 		text_printf(out, "all %u limits kept at %s grade", judged, limit_grade_name(grade));
 	else
 		text_printf(out, "%u of %u limits kept at %s grade", limits->kept[grade], judged, limit_grade_name(grade));
@@ -258,26 +252,14 @@ bool limit_is_missed(const struct proofs *proofs, enum limit_item item)
 	return verdict->known && verdict->judgement.binds && !verdict->judgement.kept;
 }
 
-// LOW to HIGH, or one value; at 6 decimals where 3 would make two values one.
-static void put_range(struct text *out, enum limit_item item, struct interval range)
-{
-	struct text words = {0};
-	put_interval(&words, item, range);
-	if (fraction_compare(range.low, range.high) == 0 || strstr(text_string(&words), " to ") != NULL) {
-		text_put(out, text_string(&words));
-	} else {
-		put_decimals(out, item, range.low, 6);
-		text_put(out, " to ");
-		put_decimals(out, item, range.high, 6);
-	}
-	out->failed = out->failed || words.failed;
-	text_release(&words);
-}
-
 static void put_allowed(struct text *out, const struct limit *limit)
 {
-	if (limit->has_low && limit->has_high) {
-		put_range(out, limit->item, (struct interval){limit->low, limit->high});
+	if (limit->has_low && limit->has_high && fraction_compare(limit->low, limit->high) == 0) {
+		put_value(out, limit->item, limit->low);
+	} else if (limit->has_low && limit->has_high) {
+		put_value(out, limit->item, limit->low);
+		text_put(out, " to ");
+		put_value(out, limit->item, limit->high);
 	} else {
 		text_put(out, limit->has_low ? "at least " : "at most ");
 		put_value(out, limit->item, limit->has_low ? limit->low : limit->high);
@@ -307,18 +289,6 @@ static bool put_other_lines(struct text *out, const struct limits_result *limits
 	return true;
 }
 
-// Where the value alone would do, and the clock's accuracy is what misses the limit.
-static void put_widened(struct text *out, const struct proofs *proofs, const struct limit *limit)
-{
-	const struct limit_row *row = &proofs->limits.rows[limit->item];
-	if (!row->widened || !limit_judge(limit, proofs->limits.measurement->items[limit->item].values).kept)
-		return;
-	text_put(out, " (with the clock's accuracy ");
-	put_range(out, limit->item, row->values);
-	put_unit(out, limit->item);
-	text_put(out, ")");
-}
-
 void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_item item)
 {
 	const struct limit *limit = limit_at(proofs, item, plan_of_proofs(proofs)->grade);
@@ -327,10 +297,9 @@ void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_it
 	const uint32_t cell = is_too_low(proofs, limit) ? measured->low_at.from_cell : measured->high_at.from_cell;
 	if (put_other_lines(out, &proofs->limits, limit))
 		return;
-	text_printf(out, "%s: ", limit_item_facts(item)->name);
+	text_printf(out, "%s is ", limit_item_facts(item)->name);
 	put_interval(out, item, measured->values);
 	put_unit(out, item);
-	put_widened(out, proofs, limit);
 	text_put(out, ", allowed ");
 	put_allowed(out, limit);
 	if (off.numerator < 0 && !limit_item_facts(item)->is_polarity) {
@@ -360,17 +329,11 @@ static bool lines_differ(const struct proofs *proofs, enum limit_item item)
 	return (item == ITEM_LINE_RATE || item == ITEM_CYCLES_PER_LINE) && fraction_compare(values->low, values->high) != 0;
 }
 
-static void put_edge(struct text *out, const struct timeline *timeline, uint32_t cell)
-{
-	const uint32_t before = cell == 0 ? timeline->cell_count - 1 : cell - 1;
-	text_printf(out, "move the edge between \"%s\" and \"%s\"", timeline_region_name(timeline, before), timeline_region_name(timeline, cell));
-	if (timeline_place(timeline, cell).cell == 0)
-		text_put(out, ", where lines begin,");
-}
-
 bool put_limit_move(struct text *out, const struct proofs *proofs, enum limit_item item)
 {
 	const struct limit_verdict *verdict = &proofs->limits.rows[item].grades[plan_of_proofs(proofs)->grade];
+	const struct timeline *timeline = proofs->timeline;
+	const uint32_t cell = verdict->move_cell, before = cell == 0 ? timeline->cell_count - 1 : cell - 1;
 	if (lines_differ(proofs, item)) {
 		text_put(out, "lines differ: let all line types last as long, and sync begin at the same place in each");
 		return true;
@@ -379,7 +342,9 @@ bool put_limit_move(struct text *out, const struct proofs *proofs, enum limit_it
 	case MOVE_NONE:
 		return false;
 	case MOVE_EDGE:
-		put_edge(out, proofs->timeline, verdict->move_cell);
+		text_printf(out, "move the edge between \"%s\" and \"%s\"", timeline_region_name(timeline, before), timeline_region_name(timeline, cell));
+		if (timeline_place(timeline, cell).cell == 0)
+			text_put(out, ", where lines begin,");
 		put_direction(out, verdict->move_cells, "earlier", "later");
 		break;
 	case MOVE_PICTURE:
