@@ -352,16 +352,29 @@ static void put_direction(struct text *out, int64_t cells, const char *less, con
 	text_printf(out, " %s", cells < 0 ? less : more);
 }
 
+// Whether it is not the length of all lines that misses, but one line that is unlike the others.
+static bool lines_differ(const struct proofs *proofs, enum limit_item item)
+{
+	const struct interval *values = &proofs->limits.measurement->items[item].values;
+	return (item == ITEM_LINE_RATE || item == ITEM_CYCLES_PER_LINE) && fraction_compare(values->low, values->high) != 0;
+}
+
 bool put_limit_move(struct text *out, const struct proofs *proofs, enum limit_item item)
 {
 	const struct limit_verdict *verdict = &proofs->limits.rows[item].grades[plan_of_proofs(proofs)->grade];
 	const struct timeline *timeline = proofs->timeline;
 	const uint32_t cell = verdict->move_cell, before = cell == 0 ? timeline->cell_count - 1 : cell - 1;
+	if (lines_differ(proofs, item)) {
+		text_put(out, "lines differ: let all line types last as long, and sync begin at the same place in each");
+		return true;
+	}
 	switch (verdict->move) {
 	case MOVE_NONE:
 		return false;
 	case MOVE_EDGE:
 		text_printf(out, "move the edge between \"%s\" and \"%s\"", timeline_region_name(timeline, before), timeline_region_name(timeline, cell));
+		if (timeline_place(timeline, cell).cell == 0)
+			text_put(out, ", where lines begin,");
 		put_direction(out, verdict->move_cells, "earlier", "later");
 		break;
 	case MOVE_PICTURE:

@@ -303,12 +303,12 @@ static void no_vertical_sync_is_a_miss(void **state)
 	(void)state;
 	static const char frame[] = "frame: [ { repeat: 1, line: plain }, { repeat: 2, line: picture } ]\n";
 	struct board *board = board_of("", SIGNALS, frame, "{ part: 28C64 }");
-	add_limit(board, ITEM_SYNC_WIDTH, GRADE_STUDIO, "at least 1 us");
+	add_limit(board, ITEM_SYNC_WIDTH, board->plan->grade, "at least 1 us");
 	assert_false(judge(board)->no_vertical_sync);
 	assert_int_equal(board->proofs->proof[PROOF_LIMITS].verdict, VERDICT_PASS);
 	release(board);
 	board = board_of("", SIGNALS, frame, "{ part: 28C64 }");
-	add_limit(board, ITEM_FIELD_RATE, GRADE_STUDIO, "at least 1 Hz");
+	add_limit(board, ITEM_FIELD_RATE, board->plan->grade, "at least 1 Hz");
 	assert_true(judge(board)->no_vertical_sync);
 	assert_int_equal(board->proofs->proof[PROOF_LIMITS].verdict, VERDICT_FAIL);
 	release(board);
