@@ -197,7 +197,7 @@ bool read_limit(struct reader *reader, const struct node *node, enum limit_item 
 	const enum limit_status status = limit_parse(text, item, limit);
 	if (status == LIMIT_OK)
 		return true;
-	diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: %s, found \"%s\"", facts->name, limit_status_words(status),
+	diagnose(reader->diagnostics, status == LIMIT_ORDER ? RULE_LIMIT_ORDER : RULE_BAD_QUANTITY, node->place, "%s: %s, found \"%s\"", facts->name, limit_status_words(status),
 	         SHORT(text));
 	if (facts->is_polarity)
 		diagnose_hint(reader->diagnostics, "write positive or negative");

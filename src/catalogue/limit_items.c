@@ -37,7 +37,7 @@ static const struct limit_item_facts facts[ITEM_COUNT] = {
 		LINES("vertical sync length", "from 0V to the first pulse after that is not broad; a sync of its own: its width"),
 	[ITEM_POST_EQUALISING_PULSES] = PULSES("post-equalising pulses", "equalising pulses after the broad ones"),
 	[ITEM_POST_EQUALISING_LINES] =
-		LINES("post-equalising lines", "from the first equalising pulse after the broad ones to the pulse after the last"),
+		LINES("post-equalising lines", "from the first equalising pulse after the broad ones to half a line after the last"),
 	[ITEM_EQUALISING_WIDTH] = TIME("equalising pulse width", "each equalising pulse"),
 	[ITEM_BROAD_WIDTH] = TIME("broad pulse width", "each broad pulse"),
 	[ITEM_SERRATION_WIDTH] = TIME("serration width", "from the end of a broad pulse to the next pulse"),

@@ -110,6 +110,7 @@ struct standard {
 	size_t pause_count;
 	const char *const *notes;        // where sources disagree: what was taken, and why
 	size_t note_count;
+	size_t own_limits;               // how many items have limits of a plan's own
 };
 
 struct standards {

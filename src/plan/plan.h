@@ -9,6 +9,7 @@
 
 #include "base/diagnostics.h"
 #include "base/fraction.h"
+#include "catalogue/standards.h"
 
 struct arena;
 struct expression;
@@ -214,6 +215,8 @@ struct plan {
 	uint32_t source_crc32;
 	const char *name;
 	const char *note;             // "" if none
+	const struct standard *standard; // to measure against, the catalogue's or made of the plan's own limits; NULL if none
+	enum limit_grade grade;       // whose verdict counts; monitor where the plan does not say
 	struct clock clock;
 	struct signal *signals;
 	size_t signal_count;

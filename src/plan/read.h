@@ -30,7 +30,7 @@ struct reader {
 
 // KEY_UNUSED: a slot of the table that this kind of mapping does not have. KEY_ELSEWHERE: the same, but report_elsewhere
 // has told of it.
-enum key_need { KEY_OPTIONAL, KEY_REQUIRED, KEY_LATER, KEY_UNUSED, KEY_ELSEWHERE };
+enum key_need { KEY_OPTIONAL, KEY_REQUIRED, KEY_UNUSED, KEY_ELSEWHERE };
 
 // A key of a mapping. The tables of keys are the language's grammar.
 struct key {
@@ -46,7 +46,7 @@ struct stray_key {
 
 #define COUNT_OF(array) (sizeof(array) / sizeof((array)[0]))
 
-// Sorts a mapping's values into values[count] by the table (NULL: absent); reports unknown, missing and later keys. `what` names the mapping in
+// Sorts a mapping's values into values[count] by the table (NULL: absent); reports unknown and missing keys. `what` names the mapping in
 // messages ("a region"). False, with values all NULL, if node is not a mapping. Where a key stands that belongs elsewhere, none is
 // reported as missing.
 bool read_mapping(struct reader *reader, const struct node *node, const char *what, const struct key *keys, size_t count,
@@ -110,6 +110,7 @@ bool node_is_set(const struct node *root);
 const char *printable_base_name(struct arena *arena, const char *path);
 
 // The parts of a plan. Each reports its errors and leaves defaults where it found any.
+void read_plan_standard(struct reader *reader, const struct node *standard, const struct node *grade); // NULL where absent
 void read_clock(struct reader *reader, const struct node *node);
 void read_signals(struct reader *reader, const struct node *node);
 void read_machine(struct reader *reader, const struct node *node);

@@ -29,7 +29,7 @@ enum {
 
 static const struct key plan_keys[PLAN_KEYS] = {
 	[PLAN_VERSION] = {"scanlatch", KEY_REQUIRED}, [PLAN_NAME] = {"name", KEY_REQUIRED},     [PLAN_NOTE] = {"note", KEY_OPTIONAL},
-	[PLAN_STANDARD] = {"standard", KEY_LATER},    [PLAN_GRADE] = {"grade", KEY_LATER},      [PLAN_CLOCK] = {"clock", KEY_REQUIRED},
+	[PLAN_STANDARD] = {"standard", KEY_OPTIONAL}, [PLAN_GRADE] = {"grade", KEY_OPTIONAL},   [PLAN_CLOCK] = {"clock", KEY_REQUIRED},
 	[PLAN_SIGNALS] = {"signals", KEY_REQUIRED},   [PLAN_LINES] = {"lines", KEY_REQUIRED},   [PLAN_FRAME] = {"frame", KEY_REQUIRED},
 	[PLAN_MACHINE] = {"machine", KEY_REQUIRED},   [PLAN_PARTS] = {"parts", KEY_OPTIONAL},   [PLAN_CHIPS] = {"chips", KEY_REQUIRED},
 	[PLAN_TIMING] = {"timing", KEY_OPTIONAL},     [PLAN_SWEEP] = {"sweep", KEY_OPTIONAL},   [PLAN_BANK] = {"bank", KEY_ELSEWHERE},
@@ -123,6 +123,7 @@ static void read_root(struct reader *reader, const struct node *root)
 	if (values[PLAN_NAME] != NULL)
 		read_file_stem(reader, values[PLAN_NAME], &plan->name);
 	plan->note = read_note(reader, values[PLAN_NOTE]);
+	read_plan_standard(reader, values[PLAN_STANDARD], values[PLAN_GRADE]);
 	if (values[PLAN_CLOCK] != NULL)
 		read_clock(reader, values[PLAN_CLOCK]);
 	if (values[PLAN_MACHINE] != NULL)

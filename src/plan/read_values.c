@@ -130,9 +130,6 @@ bool read_mapping(struct reader *reader, const struct node *node, const char *wh
 			report_unknown_key(reader, key, what, keys, count);
 		else if (keys[index].need == KEY_ELSEWHERE)
 			complete = false;
-		else if (keys[index].need == KEY_LATER)
-			diagnose(reader->diagnostics, RULE_NOT_YET, key->place, "\"%s\" of %s is not carried out by this version yet",
-			         key->text, what);
 		else
 			values[index] = node->pairs[pair].value;
 	}

@@ -1,17 +1,14 @@
-// Colour: subcarrier cycles of every line, and after how many lines and frames the phase repeats. Exact: what counts is the
-// rest of tick counts modulo the denominator of cycles per tick.
+// Colour: subcarrier cycles of every line, the phase at its start, and after how many lines and frames it repeats. Exact: what counts
+// is the rest of tick counts modulo the denominator of cycles per tick.
 #include <inttypes.h>
+#include <string.h>
 
 #include "base/arena.h"
 #include "base/text.h"
+#include "proof/modulo.h"
 #include "proof/trial.h"
 
 __extension__ typedef unsigned __int128 wide;
-
-static int64_t multiply_modulo(int64_t left, int64_t right, int64_t modulus)
-{
-	return (int64_t)((wide)left * (wide)right % (wide)modulus);
-}
 
 static bool multiply_checked(int64_t left, int64_t right, int64_t *product)
 {
@@ -35,15 +32,11 @@ static int64_t line_rest(const struct phases *phases, uint32_t line)
 	return phases->trial->lap.line_ticks[line] % phases->modulus;
 }
 
-static int64_t add_modulo(int64_t left, int64_t right, int64_t modulus)
-{
-	return left >= modulus - right ? left - (modulus - right) : left + right;
-}
-
 // Of the runs of so many lines, those that are no whole number of cycles.
 struct broken_runs {
 	uint32_t first_line;
 	uint32_t count;
+	int64_t rest;              // of the ticks of the first one
 };
 
 static struct broken_runs find_broken(const struct phases *phases, int64_t count)
@@ -56,8 +49,10 @@ static struct broken_runs find_broken(const struct phases *phases, int64_t count
 	for (uint32_t line = 0; line < end; line++)
 		rest = add_modulo(rest, line_rest(phases, line), modulus);
 	for (uint32_t line = 0; line < lines; line++) {
-		if (rest != 0 && broken.count++ == 0)
+		if (rest != 0 && broken.count++ == 0) {
 			broken.first_line = line;
+			broken.rest = rest;
+		}
 		rest = add_modulo(rest, modulus - line_rest(phases, line), modulus);
 		rest = add_modulo(rest, line_rest(phases, end), modulus);
 		end = end + 1 == lines ? 0 : end + 1;
@@ -65,38 +60,12 @@ static struct broken_runs find_broken(const struct phases *phases, int64_t count
 	return broken;
 }
 
-// The smallest shift that maps the rests of the lines onto themselves, around the frame: the classic failure function of a
-// string gives its shortest period, which counts here only if it divides the length. 0 when memory is out.
-static uint32_t rest_period(const struct phases *phases)
+static void measure_repeats(const struct phases *phases, struct colour_result *result)
 {
-	const uint32_t lines = phases->trial->timeline->line_count;
-	uint32_t *border = arena_array(phases->trial->arena, lines, sizeof *border);
-	if (border == NULL)
-		return 0;
-	uint32_t length = 0;
-	for (uint32_t line = 1; line < lines; line++) {
-		while (length > 0 && line_rest(phases, line) != line_rest(phases, length))
-			length = border[length - 1];
-		length += line_rest(phases, line) == line_rest(phases, length);
-		border[line] = length;
-	}
-	uint32_t period = lines - border[lines - 1];
-	return lines % period == 0 ? period : lines;
-}
-
-// After `period` lines the rests repeat; after so many periods their sum is whole too.
-static bool measure_repeats(const struct phases *phases, struct colour_result *result)
-{
-	uint32_t period = rest_period(phases);
-	if (period == 0)
-		return false;
-	int64_t sum = 0;
-	for (uint32_t line = 0; line < period; line++)
-		sum = add_modulo(sum, line_rest(phases, line), phases->modulus);
-	result->repeats_frames = phases->modulus / greatest_common_divisor(phases->modulus, phases->frame_rest);
-	result->repeats_known = multiply_checked(period, phases->modulus / greatest_common_divisor(phases->modulus, sum),
+	const int64_t modulus = phases->modulus, advance = result->phases.period_advance;
+	result->repeats_frames = modulus / greatest_common_divisor(modulus, phases->frame_rest);
+	result->repeats_known = multiply_checked(result->phases.period_lines, modulus / greatest_common_divisor(modulus, advance),
 	                                         &result->repeats_lines);
-	return true;
 }
 
 static bool all_lines_equal(const struct trial *trial)
@@ -164,7 +133,33 @@ static const char *take_words(const struct phases *phases, struct text *text)
 	return words;
 }
 
-static const char *phase_words(const struct phases *phases, const struct broken_phase *broken)
+// The first line whose start has not the phase that it should.
+static struct out_of_step first_out_of_step(const struct phases *phases, const struct broken_phase *broken,
+                                            const struct line_phases *measured)
+{
+	const int64_t lines = phases->trial->timeline->line_count, line = broken->runs.first_line + broken->count % lines;
+	const int64_t cycles = phases->cycles_per_tick.numerator % phases->modulus;
+	struct out_of_step first = {.present = true,
+	                            .by = phase_fraction(measured, multiply_modulo(broken->runs.rest, cycles, phases->modulus))};
+	first.line = broken->frames ? 0 : (uint32_t)(line % lines);
+	first.frame = broken->frames ? broken->count : broken->count / lines + line / lines;
+	return first;
+}
+
+// ", so line 3 starts 1/2 of a cycle out of step", "line 3 of the next frame", "line 3 of frame 2".
+static void put_out_of_step(struct text *text, const struct out_of_step *first)
+{
+	text_printf(text, ", so line %" PRIu32, first->line);
+	if (first->frame == 1)
+		text_put(text, " of the next frame");
+	else if (first->frame > 1)
+		text_printf(text, " of frame %" PRId64, first->frame);
+	text_put(text, " starts ");
+	text_put_fraction(text, first->by);
+	text_put(text, " of a cycle out of step");
+}
+
+static const char *phase_words(const struct phases *phases, const struct broken_phase *broken, const struct out_of_step *first)
 {
 	struct fraction cycles;
 	struct text text = {0};
@@ -176,6 +171,7 @@ static const char *phase_words(const struct phases *phases, const struct broken_
 		text_put_fraction(&text, cycles);
 		text_put(&text, " cycles, expected a whole number");
 	}
+	put_out_of_step(&text, first);
 	put_others(&text, broken, phases->trial->timeline->line_count);
 	return take_words(phases, &text);
 }
@@ -231,18 +227,19 @@ static bool phase_fails(const struct phases *phases, struct trial *trial, const 
 	struct counterexample found = {.present = true, .bank = trial->bank, .cell = cell,
 	                               .state = trial->lap.states != NULL ? trial->lap.states[cell] : NO_STATE,
 	                               .signal = SIZE_MAX};
-	found.what = phase_words(phases, broken);
+	found.what = phase_words(phases, broken, &result->out_of_step);
 	return phase_hint(phases, broken, result, &found.hint) && proof_fails(trial, PROOF_COLOUR, found);
 }
 
-static bool demand_phase(struct trial *trial, const struct phases *phases, const struct colour_result *result)
+static bool demand_phase(struct trial *trial, const struct phases *phases, struct colour_result *result)
 {
 	const struct clock *clock = &trial->timeline->plan->clock;
 	struct broken_phase broken = {.frames = clock->phase == PHASE_FRAMES, .count = clock->phase_count};
 	if (clock->phase == PHASE_FREE)
 		return true;
 	if (broken.frames) {
-		if (multiply_modulo(clock->phase_count % phases->modulus, phases->frame_rest, phases->modulus) == 0)
+		broken.runs.rest = multiply_modulo(clock->phase_count % phases->modulus, phases->frame_rest, phases->modulus);
+		if (broken.runs.rest == 0)
 			return true;
 		if (!multiply_checked(broken.count, trial->lap.ticks, &broken.ticks))
 			broken.ticks = -1;
@@ -252,7 +249,21 @@ static bool demand_phase(struct trial *trial, const struct phases *phases, const
 			return true;
 		broken.ticks = window_ticks(phases, broken.runs.first_line, broken.count);
 	}
+	result->out_of_step = first_out_of_step(phases, &broken, &result->phases);
 	return phase_fails(phases, trial, &broken, result);
+}
+
+// Keeps a result in the proofs' arena, where a trial's own memory does not reach. False when memory is out.
+static bool keep_result(struct proofs *proofs, const struct colour_result *result)
+{
+	const uint32_t count = result->phases.run_count;
+	struct phase_run *runs = arena_array(proofs->arena, count, sizeof *runs);
+	if (runs == NULL)
+		return false;
+	memcpy(runs, result->phases.runs, count * sizeof *runs);
+	proofs->colour = *result;
+	proofs->colour.phases.runs = runs;
+	return true;
 }
 
 bool prove_colour(struct trial *trial)
@@ -264,23 +275,23 @@ bool prove_colour(struct trial *trial)
 		return true;
 	}
 	struct phases phases = {.trial = trial};
-	struct colour_result result = {all_lines_equal(trial), FRACTION_ZERO, FRACTION_ZERO, false, 0, 0};
+	struct colour_result result = {.uniform = all_lines_equal(trial), .cycles_per_line = FRACTION_ZERO,
+	                               .cycles_per_frame = FRACTION_ZERO, .out_of_step.by = FRACTION_ZERO};
 	if (!fraction_divide(clock->subcarrier_hz, clock->master_hz, &phases.cycles_per_tick)) {
 		proof_not_judged(trial, PROOF_COLOUR, "not judged: subcarrier cycles per tick do not fit 64 bits");
 		return true;
 	}
 	phases.modulus = phases.cycles_per_tick.denominator;
 	phases.frame_rest = trial->lap.ticks % phases.modulus;
-	if (!measure_repeats(&phases, &result))
+	if (!line_phases_measure(trial->lap.line_ticks, trial->timeline->line_count, phases.cycles_per_tick, trial->arena, &result.phases))
 		return false;
-	if (!cycles_of(&phases, trial->lap.line_ticks[0], &result.cycles_per_line) ||
-	    !cycles_of(&phases, trial->lap.ticks, &result.cycles_per_frame))
-		result.repeats_known = false;
+	measure_repeats(&phases, &result);
+	// What does not fit stays 0.
+	(void)cycles_of(&phases, trial->lap.line_ticks[0], &result.cycles_per_line);
+	(void)cycles_of(&phases, trial->lap.ticks, &result.cycles_per_frame);
 	bool failed_before = proofs->proof[PROOF_COLOUR].verdict == VERDICT_FAIL;
 	if (!demand_phase(trial, &phases, &result))
 		return false;
 	bool fails_first = proofs->proof[PROOF_COLOUR].verdict == VERDICT_FAIL && !failed_before;
-	if (trial->first || fails_first)
-		proofs->colour = result;
-	return true;
+	return !(trial->first || fails_first) || keep_result(proofs, &result);
 }

@@ -1,4 +1,4 @@
-// Colour and speed of a plan that has no images yet: the lap is the timeline itself, without states.
+// Colour, limits and speed of a plan that has no images yet: the lap is the timeline itself, without states.
 #include "base/arena.h"
 #include "proof/trial.h"
 
@@ -33,10 +33,10 @@ struct proofs *proofs_of_plan(const struct timeline *timeline)
 	if (proofs == NULL)
 		return NULL;
 	for (unsigned kind = 0; kind < PROOF_COUNT; kind++)
-		if (kind != PROOF_COLOUR && kind != PROOF_SPEED)
+		if (kind != PROOF_COLOUR && kind != PROOF_LIMITS && kind != PROOF_SPEED)
 			proofs->proof[kind].verdict = VERDICT_ABSENT;
 	struct trial trial = {.proofs = proofs, .timeline = timeline, .first = true, .arena = arena_create(), .wiring = wiring_of(timeline->plan)};
-	const bool judged = trial.arena != NULL && lap_of_plan(&trial) && prove_colour(&trial) && prove_speed(&trial);
+	const bool judged = trial.arena != NULL && lap_of_plan(&trial) && prove_colour(&trial) && prove_limits(&trial) && prove_speed(&trial);
 	arena_destroy(trial.arena);
 	if (judged)
 		return proofs;

@@ -5,6 +5,8 @@
 
 #include "image/image.h"
 #include "layout/timeline.h"
+#include "measure/measure.h"
+#include "proof/line_phases.h"
 
 enum proof_kind {
 	PROOF_CLOSURE,
@@ -12,6 +14,7 @@ enum proof_kind {
 	PROOF_COLOUR,
 	PROOF_POWER_UP,
 	PROOF_UPSET,
+	PROOF_LIMITS,
 	PROOF_GLITCHES,
 	PROOF_SPEED,
 	PROOF_SWEEP,
@@ -66,13 +69,23 @@ struct signals_result {
 	uint64_t held_comparisons; // cells whose held bits were compared
 };
 
+// The first line that does not start in the phase that the plan asks for.
+struct out_of_step {
+	bool present;
+	uint32_t line;             // in its frame
+	int64_t frame;             // 0: the first
+	struct fraction by;        // of a cycle, above 0 and below 1
+};
+
 struct colour_result {
 	bool uniform;              // every line has the same number of cycles
-	struct fraction cycles_per_line;   // of the first line
-	struct fraction cycles_per_frame;
-	bool repeats_known;        // false if the figures do not fit 64 bits
+	struct fraction cycles_per_line;   // of the first line; 0 if it does not fit 64 bits
+	struct fraction cycles_per_frame;  // 0 if it does not fit 64 bits
+	bool repeats_known;        // false if repeats_lines does not fit 64 bits
 	int64_t repeats_lines;     // the phase at line starts repeats after this many lines
 	int64_t repeats_frames;
+	struct line_phases phases; // at the starts of lines
+	struct out_of_step out_of_step;
 };
 
 struct power_up_result {
@@ -100,6 +113,36 @@ struct upset_result {
 	struct fraction mean_slip_cells;
 	uint32_t worst_slip_cell;
 	unsigned worst_slip_bit;
+};
+
+// What would keep a limit that is missed.
+enum limit_move {
+	MOVE_NONE,                 // no whole number of cells does, or it is nothing that edges of regions set
+	MOVE_EDGE,                 // the edge of a region, in every line that has it
+	MOVE_PICTURE,              // both edges of the picture
+	MOVE_LENGTH                // the lines' ends
+};
+
+struct limit_verdict {
+	bool has_limit;            // the standard has one for the item, at this grade
+	bool known;                // it was judged: the item was measured, and numbers fit
+	struct judgement judgement;
+	enum limit_move move;
+	int64_t move_cells;        // later if positive; of lines: longer
+	uint32_t move_cell;        // of the frame: where the edge is, or the picture begins
+	struct interval moved;     // what would be measured then, accuracy included
+};
+
+struct limit_row {
+	bool widened;              // the clock has an accuracy that matters here
+	struct interval values;    // measured, and widened by the accuracy
+	struct limit_verdict grades[GRADE_COUNT];
+};
+
+struct limits_result {
+	const struct measurement *measurement; // NULL without a standard, or if the frame does not close
+	struct limit_row rows[ITEM_COUNT];
+	unsigned kept[GRADE_COUNT], missed[GRADE_COUNT], unknown[GRADE_COUNT]; // limits that bind
 };
 
 struct glitch_edge {
@@ -181,6 +224,7 @@ struct proofs {
 	struct colour_result colour;
 	struct power_up_result power_up;
 	struct upset_result upset;
+	struct limits_result limits;
 	struct glitch_result glitches;
 	struct speed_result speed;
 	struct sweep_result *sweeps;             // [plan->sweep_count]
@@ -194,7 +238,7 @@ struct proofs *proofs_run(const struct timeline *timeline, const struct image *i
 // The same in the given banks alone: of a set, those that show a plan. NULL: 0 … banks-1.
 struct proofs *proofs_run_banks(const struct timeline *timeline, const struct image *images, const uint32_t *bank_numbers, uint32_t banks,
                                 bool has_start, uint32_t start_state);
-// What can be said of a plan without images: colour and speed, as its timeline has them; all other proofs are absent. NULL when memory is
+// What can be said of a plan without images: colour, limits and speed, as its timeline has them; all other proofs are absent. NULL when memory is
 // out. Freed with proofs_destroy.
 struct proofs *proofs_of_plan(const struct timeline *timeline);
 

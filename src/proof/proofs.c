@@ -17,6 +17,7 @@ static const struct proof_row proof_rows[PROOF_COUNT] = {
 	[PROOF_COLOUR] = {"colour", true, prove_colour},
 	[PROOF_POWER_UP] = {"power-up", true, prove_power_up},
 	[PROOF_UPSET] = {"upset", false, prove_upset},
+	[PROOF_LIMITS] = {"limits", false, prove_limits},
 	[PROOF_GLITCHES] = {"glitches", false, prove_glitches},
 	[PROOF_SPEED] = {"speed", false, prove_speed},
 	[PROOF_SWEEP] = {"sweep", true, prove_sweep},
@@ -43,7 +44,7 @@ bool proofs_failed(const struct proofs *proofs, bool strict)
 static void zero_figures(struct proofs *proofs)
 {
 	const struct fraction zero = FRACTION_ZERO;
-	proofs->colour.cycles_per_line = proofs->colour.cycles_per_frame = zero;
+	proofs->colour.cycles_per_line = proofs->colour.cycles_per_frame = proofs->colour.out_of_step.by = zero;
 	proofs->power_up.longest_lines = zero;
 	proofs->upset.mean_cells = proofs->upset.worst_slip_lines = proofs->upset.mean_slip_cells = zero;
 	proofs->glitches.settle_s = zero;

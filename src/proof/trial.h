@@ -74,6 +74,7 @@ bool prove_signals(struct trial *trial);
 bool prove_colour(struct trial *trial);
 bool prove_power_up(struct trial *trial);
 bool prove_upset(struct trial *trial);
+bool prove_limits(struct trial *trial);
 bool prove_glitches(struct trial *trial);
 bool prove_speed(struct trial *trial);
 bool prove_sweep(struct trial *trial);

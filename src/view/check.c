@@ -12,6 +12,7 @@
 #include "view/columns.h"
 #include "view/divider.h"
 #include "view/figures.h"
+#include "view/limits.h"
 #include "view/proofs.h"
 
 // A line type on its way to a table.
@@ -113,6 +114,17 @@ static uint32_t *count_uses(const struct timeline *timeline, struct arena *arena
 	return uses;
 }
 
+// The cycles of subcarrier in a line, where there is one and they fit a fraction.
+static void put_cycles(struct text *out, const struct clock *clock, int64_t ticks)
+{
+	struct fraction cycles;
+	if (!cycles_of_ticks(clock, ticks, &cycles))
+		return;
+	text_put(out, ", ");
+	text_put_exact(out, cycles);
+	text_put(out, " cycles");
+}
+
 static void put_line(struct text *out, const struct timeline *timeline, size_t type, uint32_t uses)
 {
 	const struct line_view view = {timeline, &timeline->plan->lines[type], &timeline->types[type]};
@@ -124,7 +136,9 @@ static void put_line(struct text *out, const struct timeline *timeline, size_t t
 	text_put_count(out, (uint64_t)view.laid->ticks, "tick", "ticks");
 	text_put(out, ", ");
 	put_microseconds(out, &timeline->plan->clock, fraction_whole(view.laid->ticks));
-	text_put(out, " us; ");
+	text_put(out, " us");
+	put_cycles(out, &timeline->plan->clock, view.laid->ticks);
+	text_put(out, "; ");
 	text_put_count(out, uses, "line", "lines");
 	text_put(out, " of the frame\n");
 	if (view.laid->auto_stretched > 0)
@@ -229,8 +243,14 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 		text_put(out, "\n");
 		view_chips(out, plan);
 		text_put(out, "\n");
+		if (plan->standard != NULL) {
+			view_limits(out, proofs);
+			text_put(out, "\n");
+		}
 		view_proof(out, proofs, PROOF_COLOUR, false);
+		view_proof(out, proofs, PROOF_LIMITS, false);
 		view_proof(out, proofs, PROOF_SPEED, false);
+		view_counting(out, proofs);
 		if (kept != NULL)
 			*kept = !proofs_failed(proofs, false);
 		if (advice_kept != NULL)

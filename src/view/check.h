@@ -17,7 +17,8 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 //     "clock": { "master_hz", "master_mhz", "cell_ticks", "stretch_ticks", "dot_ticks", "accuracy_ppm" (if given),
 //                "subcarrier_hz", "subcarrier_mhz" (if given) },
 //     "divider": see view/divider.h,
-//     "lines": [ { "name", "cells", "ticks", "us", "stretched_cells", "used": lines of the frame,
+//     "lines": [ { "name", "cells", "ticks", "us", "cycles", "cycles_rounded" (of the subcarrier; left out if there is none
+//                  or they do not fit 64 bits), "stretched_cells", "used": lines of the frame,
 //                  "regions": [ { "name", "first_cell", "cells", "stretched_cells", "start_ticks", "start_us", "ticks", "us",
 //                                 "asked_ticks", "asked_us", "rounding_ticks", "rounding_us" (not of a fill),
 //                                 "asserted": [signal…] } ] } ],

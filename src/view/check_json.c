@@ -69,6 +69,7 @@ static json_t *line_json(const struct timeline *timeline, size_t type, uint32_t 
 	const struct laid_line *laid = &timeline->types[type];
 	json_t *object = json_object(), *regions = json_array();
 	uint32_t stretched = 0;
+	struct fraction cycles;
 	for (size_t index = 0; index < line->region_count; index++) {
 		json_append(&regions, region_json(timeline->plan, &line->regions[index], &laid->regions[index]));
 		stretched += laid->regions[index].stretched;
@@ -77,6 +78,8 @@ static json_t *line_json(const struct timeline *timeline, size_t type, uint32_t 
 	json_put(&object, "cells", json_integer(laid->cells));
 	json_put(&object, "ticks", ticks_json(laid->ticks));
 	put_microseconds(&object, "us", &timeline->plan->clock, fraction_whole(laid->ticks));
+	if (cycles_of_ticks(&timeline->plan->clock, laid->ticks, &cycles))
+		json_put_fraction(&object, "cycles", cycles);
 	json_put(&object, "stretched_cells", json_integer(stretched));
 	json_put(&object, "used", json_integer(uses));
 	json_put(&object, "regions", regions);
@@ -128,6 +131,7 @@ static json_t *judgement_json(const struct timeline *timeline, bool *kept, bool 
 		return NULL;
 	json_t *all = view_proofs_json(proofs), *object = json_object();
 	json_put(&object, "colour", json_incref(json_object_get(all, "colour")));
+	json_put(&object, "limits", json_incref(json_object_get(all, "limits")));
 	json_put(&object, "speed", json_incref(json_object_get(all, "speed")));
 	json_decref(all);
 	if (kept != NULL)

@@ -35,6 +35,13 @@ bool seconds_of_ticks(const struct clock *clock, int64_t ticks, struct fraction 
 	return fraction_divide(fraction_whole(ticks), clock->master_hz, seconds);
 }
 
+bool cycles_of_ticks(const struct clock *clock, int64_t ticks, struct fraction *cycles)
+{
+	struct fraction cycles_per_tick;
+	return clock->has_subcarrier && fraction_divide(clock->subcarrier_hz, clock->master_hz, &cycles_per_tick) &&
+	       fraction_multiply(fraction_whole(ticks), cycles_per_tick, cycles);
+}
+
 static wide power_of_ten(unsigned exponent)
 {
 	wide power = 1;
@@ -79,6 +86,16 @@ void text_put_rounded(struct text *text, struct fraction value, unsigned places)
 {
 	assert(places <= MOST_PLACES);
 	put_scaled(text, value, 0, places);
+}
+
+void text_put_exact(struct text *text, struct fraction value)
+{
+	text_put_fraction(text, value);
+	if (fraction_is_whole(value))
+		return;
+	text_put(text, " (");
+	text_put_rounded(text, value, 6);
+	text_put(text, ")");
 }
 
 void text_put_time_number(struct text *text, struct fraction seconds, enum time_unit unit)

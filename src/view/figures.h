@@ -20,9 +20,15 @@ enum time_unit { UNIT_SECONDS, UNIT_MILLISECONDS, UNIT_MICROSECONDS, UNIT_NANOSE
 // The seconds that so many ticks last, exact. False, with *seconds as it was, if they do not fit.
 bool seconds_of_ticks(const struct clock *clock, int64_t ticks, struct fraction *seconds);
 
+// The cycles of the subcarrier in so many ticks, exact. False, with *cycles as it was, if there is none or they do not fit.
+bool cycles_of_ticks(const struct clock *clock, int64_t ticks, struct fraction *cycles);
+
 // Puts a decimal rounded to `places` (0 to 9), halves away from zero, without zeros at its end. A value that would be put
 // as 0, though it is not, gets the places that show its first digit, up to 9.
 void text_put_rounded(struct text *text, struct fraction value, unsigned places);
+
+// Puts "455/2 (227.5)", "228": the exact value, and where that is no whole number its decimal of up to 6 places.
+void text_put_exact(struct text *text, struct fraction value);
 
 // Puts the number of a time in a unit, rounded to 3 places as above: "16.688".
 void text_put_time_number(struct text *text, struct fraction seconds, enum time_unit unit);

@@ -2,6 +2,7 @@
 #include <inttypes.h>
 
 #include "base/text.h"
+#include "view/limits.h"
 #include "view/proofs_shared.h"
 #include "view/states.h"
 
@@ -27,17 +28,6 @@ static void put_lines(struct text *out, struct fraction lines)
 	else
 		text_put_rounded(out, lines, PLACES);
 	text_put(out, lines.numerator == 1 ? " line" : " lines");
-}
-
-// "455/2 (227.5)", "228".
-static void put_exact(struct text *out, struct fraction value)
-{
-	text_put_fraction(out, value);
-	if (fraction_is_whole(value))
-		return;
-	text_put(out, " (");
-	text_put_rounded(out, value, 6);
-	text_put(out, ")");
 }
 
 static void put_frame(struct text *out, uint32_t lines, uint32_t cells, int64_t ticks)
@@ -85,60 +75,6 @@ static void put_signals(struct text *out, const struct proofs *proofs)
 	}
 	text_put(out, failed ? " are as planned" : " as planned");
 	put_banks(out, proofs, "in");
-}
-
-static void put_every(struct text *out, int64_t count, const char *one, const char *many)
-{
-	if (count == 1)
-		text_printf(out, "every %s", one);
-	else
-		text_printf(out, "every %" PRId64 " %s", count, many);
-}
-
-void put_phase(struct text *out, const struct clock *clock)
-{
-	switch (clock->phase) {
-	case PHASE_FREE: text_put(out, "free"); break;
-	case PHASE_LINES: put_every(out, clock->phase_count, "line", "lines"); break;
-	case PHASE_FRAMES: put_every(out, clock->phase_count, "frame", "frames"); break;
-	}
-}
-
-static void put_cycles(struct text *out, const struct colour_result *colour)
-{
-	if (colour->cycles_per_line.numerator == 0 || colour->cycles_per_frame.numerator == 0) {
-		text_put(out, "cycles a line or frame are too fine to count");
-	} else if (colour->uniform) {
-		put_exact(out, colour->cycles_per_line);
-		text_put(out, " cycles a line");
-	} else {
-		text_put(out, "lines differ, the first has ");
-		put_exact(out, colour->cycles_per_line);
-		text_put(out, " cycles; ");
-		put_exact(out, colour->cycles_per_frame);
-		text_put(out, " cycles a frame");
-	}
-}
-
-static void put_colour(struct text *out, const struct proofs *proofs)
-{
-	const struct colour_result *colour = &proofs->colour;
-	const struct clock *clock = &plan_of(proofs)->clock;
-	if (proofs->proof[PROOF_COLOUR].verdict == VERDICT_ABSENT) {
-		text_put(out, "the plan has no subcarrier");
-		return;
-	}
-	put_cycles(out, colour);
-	if (colour->repeats_known) {
-		text_put(out, "; the phase repeats ");
-		put_every(out, colour->repeats_lines, "line", "lines");
-		text_put(out, " and ");
-		put_every(out, colour->repeats_frames, "frame", "frames");
-	} else {
-		text_put(out, "; the phase repeats too seldom to count");
-	}
-	text_put(out, "; asked: ");
-	put_phase(out, clock);
 }
 
 static void put_longest_way(struct text *out, const struct proofs *proofs)
@@ -472,6 +408,7 @@ void put_proof_figures(struct text *out, const struct proofs *proofs, enum proof
 	case PROOF_COLOUR: put_colour(out, proofs); break;
 	case PROOF_POWER_UP: put_power_up(out, proofs); break;
 	case PROOF_UPSET: put_upset(out, proofs); break;
+	case PROOF_LIMITS: put_limits_figures(out, proofs); break;
 	case PROOF_GLITCHES: put_glitches(out, proofs); break;
 	case PROOF_SPEED: put_speed(out, proofs); break;
 	case PROOF_SWEEP: put_sweeps(out, proofs); break;

@@ -1,4 +1,5 @@
 #include "base/text.h"
+#include "view/limits.h"
 #include "view/proofs.h"
 #include "view/proofs_shared.h"
 #include "view/states.h"
@@ -13,7 +14,7 @@ static json_t *truth(bool value)
 	return json_boolean(value);
 }
 
-static void put_place(json_t **object, const struct timeline *timeline, uint32_t cell)
+void json_put_place(json_t **object, const struct timeline *timeline, uint32_t cell)
 {
 	const struct cell_place place = timeline_place(timeline, cell);
 	json_put(object, "line", count(place.line));
@@ -42,7 +43,7 @@ static json_t *counterexample_json(const struct proofs *proofs, enum proof_kind 
 	if (!found->present)
 		return object;
 	if (has_place(proofs, kind))
-		put_place(&object, proofs->timeline, found->cell);
+		json_put_place(&object, proofs->timeline, found->cell);
 	if (found->state != NO_STATE)
 		json_put_row_state(&object, proofs, found->stage, found->state);
 	if (found->signal != SIZE_MAX)
@@ -88,30 +89,6 @@ static void put_signals(json_t **object, const struct proofs *proofs)
 	json_put(object, "codes", codes_json(proofs));
 }
 
-static json_t *phase_json(const struct clock *clock)
-{
-	struct text words = {0};
-	put_phase(&words, clock);
-	json_t *string = words.failed ? NULL : json_string(text_string(&words));
-	text_release(&words);
-	return string;
-}
-
-static void put_colour(json_t **object, const struct proofs *proofs)
-{
-	const struct colour_result *colour = &proofs->colour;
-	json_put(object, "uniform", truth(colour->uniform));
-	if (colour->cycles_per_line.numerator != 0)
-		json_put_fraction(object, "cycles_per_line", colour->cycles_per_line);
-	if (colour->cycles_per_frame.numerator != 0)
-		json_put_fraction(object, "cycles_per_frame", colour->cycles_per_frame);
-	if (colour->repeats_known) {
-		json_put(object, "repeats_lines", json_integer(colour->repeats_lines));
-		json_put(object, "repeats_frames", json_integer(colour->repeats_frames));
-	}
-	json_put(object, "asked", phase_json(&plan_of(proofs)->clock));
-}
-
 static void put_power_up(json_t **object, const struct proofs *proofs)
 {
 	const struct power_up_result *power_up = &proofs->power_up;
@@ -138,7 +115,7 @@ static void put_power_up(json_t **object, const struct proofs *proofs)
 static json_t *flip_json(const struct proofs *proofs, uint32_t cell, unsigned bit)
 {
 	json_t *object = json_object();
-	put_place(&object, proofs->timeline, cell);
+	json_put_place(&object, proofs->timeline, cell);
 	json_put_state_bit(&object, proofs, bit);
 	return object;
 }
@@ -161,7 +138,7 @@ static json_t *edge_json(const struct proofs *proofs, const struct glitch_edge *
 	json_t *object = json_object();
 	json_put(&object, "signal", json_string(plan_of(proofs)->signals[edge->signal].name));
 	json_put(&object, "edges", count(edge->count));
-	put_place(&object, proofs->timeline, edge->cell);
+	json_put_place(&object, proofs->timeline, edge->cell);
 	json_put(&object, "from_state", state_json(proofs, edge->from_state));
 	json_put(&object, "to_state", state_json(proofs, edge->to_state));
 	json_put(&object, "from_code", count(edge->from_code));
@@ -287,9 +264,10 @@ static void put_figures(json_t **object, const struct proofs *proofs, enum proof
 	switch (kind) {
 	case PROOF_CLOSURE: put_closure(object, proofs); break;
 	case PROOF_SIGNALS: put_signals(object, proofs); break;
-	case PROOF_COLOUR: put_colour(object, proofs); break;
+	case PROOF_COLOUR: json_put_colour(object, proofs); break;
 	case PROOF_POWER_UP: put_power_up(object, proofs); break;
 	case PROOF_UPSET: put_upset(object, proofs); break;
+	case PROOF_LIMITS: json_put_limits(object, proofs); break;
 	case PROOF_GLITCHES: put_glitches(object, proofs); break;
 	case PROOF_SPEED: put_speed(object, proofs); break;
 	case PROOF_SWEEP: put_sweeps(object, proofs); break;

@@ -48,15 +48,19 @@ static inline bool has_place(const struct proofs *proofs, enum proof_kind kind)
 	return proofs->proof[kind].counterexample.present && kind != PROOF_POWER_UP;
 }
 
-// In proofs_figures.c. When memory is out, out->failed is set.
+// In proofs_colour.c: the figures of colour, as put_proof_figures and view_proofs_json have them.
+void put_colour(struct text *out, const struct proofs *proofs);
+void json_put_colour(json_t **object, const struct proofs *proofs);
 
-// Puts what the plan asks of the colour phase: "free", "every line", "every 2 frames".
-void put_phase(struct text *out, const struct clock *clock);
+// In proofs_figures.c. When memory is out, out->failed is set.
 
 // Puts what came of one sweep, in words.
 void put_sweep(struct text *out, const struct sweep *asked, const struct sweep_result *sweep);
 
 // Puts the figures of a proof, in words, without line breaks. Not for proofs that have a reason_of.
 void put_proof_figures(struct text *out, const struct proofs *proofs, enum proof_kind kind);
+
+// In proofs_json.c: sets the five keys of a PLACE, see view/proofs.h.
+void json_put_place(json_t **object, const struct timeline *timeline, uint32_t cell);
 
 #endif

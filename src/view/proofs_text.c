@@ -3,6 +3,7 @@
 #include <inttypes.h>
 
 #include "base/text.h"
+#include "view/limits.h"
 #include "view/proofs_shared.h"
 #include "view/states.h"
 
@@ -163,6 +164,23 @@ static void detail_glitch(struct report *report, const struct glitch_edge *edge)
 	end_detail(report);
 }
 
+// Stray pulses first, as they may spoil what else is measured; then each limit that is missed, and what would keep it.
+static void detail_limits(struct report *report)
+{
+	if (report->proofs->proof[PROOF_LIMITS].counterexample.present)
+		detail_counterexample(report, PROOF_LIMITS);
+	for (size_t item = 0; item < ITEM_COUNT; item++) {
+		if (!limit_is_missed(report->proofs, (enum limit_item)item))
+			continue;
+		put_limit_miss(&report->words, report->proofs, (enum limit_item)item);
+		end_detail(report);
+		text_put(&report->words, "hint: ");
+		if (put_limit_move(&report->words, report->proofs, (enum limit_item)item))
+			end_detail(report);
+		report->words.length = 0;
+	}
+}
+
 static void detail_sweeps(struct report *report)
 {
 	const struct plan *plan = plan_of(report->proofs);
@@ -198,6 +216,8 @@ static void put_details(struct report *report, enum proof_kind kind)
 	const struct proofs *proofs = report->proofs;
 	if (kind == PROOF_SWEEP) {
 		detail_sweeps(report);
+	} else if (kind == PROOF_LIMITS) {
+		detail_limits(report);
 	} else if (kind == PROOF_GLITCHES) {
 		for (size_t index = 0; index < proofs->glitches.disturbed; index++)
 			detail_glitch(report, &proofs->glitches.first[index]);
@@ -230,6 +250,9 @@ static bool names_lines(const struct proofs *proofs)
 	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
 		if (proof_failed(proofs, kind) && has_place(proofs, kind))
 			return true;
+	for (size_t item = 0; item < ITEM_COUNT; item++)
+		if (limit_is_missed(proofs, (enum limit_item)item))
+			return true;
 	return reason_of(proofs, PROOF_UPSET) == NULL && (upset->worst_cells > 0 || upset->worst_slip_cells > 0);
 }
 
@@ -251,10 +274,15 @@ void view_must(struct text *out, const char *name, bool kept, const char *words,
 	text_release(&report.words);
 }
 
+void view_counting(struct text *out, const struct proofs *proofs)
+{
+	if (names_lines(proofs))
+		text_put(out, "Lines and cells are counted from 0.\n");
+}
+
 void view_proofs(struct text *out, const struct proofs *proofs, bool colour)
 {
 	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
 		view_proof(out, proofs, kind, colour);
-	if (names_lines(proofs))
-		text_put(out, "Lines and cells are counted from 0.\n");
+	view_counting(out, proofs);
 }

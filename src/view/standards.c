@@ -19,16 +19,15 @@ struct numbered {
 	size_t source_count;
 };
 
-// A value in the item's unit. False if it does not fit, or needs no number.
-static bool in_unit(enum limit_item item, struct fraction value, struct fraction *result)
+bool limit_value_in_unit(enum limit_item item, struct fraction value, struct fraction *result)
 {
-	const struct limit_item_facts *facts = limit_item_facts(item);
-	*result = value;
-	if (strcmp(facts->unit, "us") == 0)
+	const char *unit = limit_item_facts(item)->unit;
+	if (strcmp(unit, "us") == 0)
 		return fraction_multiply(value, fraction_whole(1000000), result);
-	if (strcmp(facts->unit, "MHz") == 0)
+	if (strcmp(unit, "MHz") == 0)
 		return fraction_divide(value, fraction_whole(1000000), result);
-	return !facts->is_polarity;
+	*result = value;
+	return true;
 }
 
 static const char *polarity_word(struct fraction value)
@@ -39,10 +38,10 @@ static const char *polarity_word(struct fraction value)
 void put_limit_value(struct text *out, enum limit_item item, struct fraction value)
 {
 	struct fraction scaled;
-	if (in_unit(item, value, &scaled))
-		text_put_rounded(out, scaled, PLACES);
-	else if (limit_item_facts(item)->is_polarity)
+	if (limit_item_facts(item)->is_polarity)
 		text_put(out, polarity_word(value));
+	else if (limit_value_in_unit(item, value, &scaled))
+		text_put_rounded(out, scaled, PLACES);
 	else
 		text_printf(out, "%g", fraction_rounded(value) * (limit_item_facts(item)->dimension == DIMENSION_TIME ? 1e6 : 1e-6));
 }
@@ -171,7 +170,7 @@ static void json_put_value(json_t **object, const char *key, enum limit_item ite
 		return;
 	if (limit_item_facts(item)->is_polarity)
 		json_put(object, key, json_string(polarity_word(value)));
-	else if (in_unit(item, value, &scaled))
+	else if (limit_value_in_unit(item, value, &scaled))
 		json_put_fraction(object, key, scaled);
 }
 

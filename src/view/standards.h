@@ -12,6 +12,9 @@ struct text;
 // "negative". When memory is out, out->failed is set.
 void put_limit_value(struct text *out, enum limit_item item, struct fraction value);
 
+// A value in the item's unit. False, with *result as it was, if it does not fit.
+bool limit_value_in_unit(enum limit_item item, struct fraction value, struct fraction *result);
+
 // Puts every standard as a table of its limits, at most 100 characters a line, followed by the source of every value, and at the
 // end what each item is. When memory is out, out->failed is set.
 void view_standards(struct text *out, const struct standards *standards);

@@ -34,7 +34,12 @@ same "picture" "21 80 192 720 0" "$(value '" ".join(str(d["lines"][0]["regions"]
 same "a fill asks for nothing" "False" "$(value '"asked_ticks" in d["lines"][0]["regions"][4]')"
 same "frame" "262 26462 238944 1640625/27379 59.922751" "$(value '" ".join(map(str, [d["frame"]["lines"], d["frame"]["cells"],
 	d["frame"]["ticks"], d["frame"]["rate"]["fraction"], d["frame"]["rate"]["decimal"]]))')"
-same "colour and speed" "{'colour': 'pass', 'speed': 'pass'}" "$(value '{key: proof["verdict"] for key, proof in d["proofs"].items()}')"
+same "colour, limits and speed" "{'colour': 'pass', 'limits': 'absent', 'speed': 'pass'}" "$(value '{key: proof["verdict"] for key, proof in d["proofs"].items()}')"
+
+# 909 ticks and a stretch of 3 are 912, 228 periods of 4 ticks: every line starts where line 0 does.
+same "cycles of each line type" "[('228', 228.0)]" "$(value 'sorted({(line["cycles"], line["cycles_rounded"]) for line in d["lines"]})')"
+same "phases" "{'period': 1, 'advance': '0', 'runs': [{'line': 0, 'lines': 1, 'phase': '0', 'advance': '0'}]} 1 1" \
+	"$(value '" ".join(str(d["proofs"]["colour"][key]) for key in ["phases", "repeats_lines", "repeats_frames"])')"
 
 # Where every cell is stretched, the shortest is a stretched one: (1 + 1) us.
 cat >"$work/all-long.yaml" <<'PLAN'
@@ -49,5 +54,6 @@ chips: { part: 28C16, speed: 150 ns }
 PLAN
 "$SCANLATCH" check --json "$work/all-long.yaml" >"$work/check.json"
 same "the shortest cell" 2000.0 "$(value 'd["proofs"]["speed"]["cell_ns"]')"
+same "no subcarrier, no cycles" "False" "$(value '"cycles" in d["lines"][0]')"
 
 finish

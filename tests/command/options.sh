@@ -190,7 +190,7 @@ json 'build --json of two' 0 build --json good.yaml slow.yaml -o out
 json 'build --json, nothing written' 1 build --json out-of-step.yaml -o nowhere
 holds 'build --json, nothing written: no folder' test ! -e nowhere
 json 'prove --json' 0 prove --json good.yaml out
-same 'prove --json: which plan, and how it went' 'own-part False [] 8' \
+same 'prove --json: which plan, and how it went' 'own-part False [] 9' \
 	"$(python3 -c 'import json
 report = json.load(open("stdout"))
 print(report["name"], report["failed"], report["missed"], len(report["proofs"]))')"

@@ -22,7 +22,7 @@ prove() {
 	if [ "$wanted" -gt 1 ]; then
 		same "prove $*: nothing on standard output" '' "$(cat stdout)"
 	else
-		holds "prove $*: a line for each proof" test "$(grep -Ec '^(pass|none|miss|FAIL)  [a-z]' stdout)" -eq 8
+		holds "prove $*: a line for each proof" test "$(grep -Ec '^(pass|none|miss|FAIL)  [a-z]' stdout)" -eq 9
 	fi
 }
 

@@ -60,7 +60,7 @@ print(", ".join("%d %s %d" % (start["bank"], start["stage"], start["state"]) for
 
 "$SCANLATCH" prove jetty.yaml out >stdout 2>stderr
 same 'prove: exit status' 0 $?
-same 'prove: eight proofs for each plan, and the jumpers' 17 "$(grep -Ec '^(pass|none|miss|FAIL)  [a-z]' stdout)"
+same 'prove: nine proofs for each plan, and the jumpers' 19 "$(grep -Ec '^(pass|none|miss|FAIL)  [a-z]' stdout)"
 "$SCANLATCH" prove --json jetty.yaml out >proofs.json
 same 'prove --json: keys' "['name', 'failed', 'missed', 'banks', 'jumpers']" "$(python3 -c 'import json; print(list(json.load(open("proofs.json"))))')"
 "$SCANLATCH" check jetty.yaml >stdout 2>stderr

@@ -10,9 +10,9 @@
 static void names(void **test)
 {
 	(void)test;
-	static const char *const expected[] = {"closure", "signals", "colour", "power-up", "upset", "glitches", "speed", "sweep"};
-	static const bool must[] = {true, true, true, true, false, false, false, true};
-	assert_int_equal(PROOF_COUNT, 8);
+	static const char *const expected[] = {"closure", "signals", "colour", "power-up", "upset", "limits", "glitches", "speed", "sweep"};
+	static const bool must[] = {true, true, true, true, false, false, false, false, true};
+	assert_int_equal(PROOF_COUNT, 9);
 	for (unsigned kind = 0; kind < PROOF_COUNT; kind++) {
 		assert_string_equal(proof_name(kind), expected[kind]);
 		assert_int_equal(proof_is_must(kind), must[kind]);

@@ -67,6 +67,7 @@ import oracle_line_frame
 import oracle_machine
 from oracle_chips import (Fault, Rows, bank_count, check_open_data_pins, check_repeats, chips_of, image_size_fault, read_hex,
 	row_addresses)
+from oracle_colour import check_figures
 from oracle_line_states import feasible_lines
 from oracle_machine import (Machine, asserted_pins, cell_ticks, check_colour, check_holds, check_lengths, check_signals,
 	check_spare_rows, check_sweeps, spare_states)
@@ -181,6 +182,9 @@ def judge_failed(plan, folder, options):
 	except Fault as fault:
 		if str(fault).split(":")[0] not in failed & {"colour", "sweep"}:
 			raise
+		if "colour" in failed:
+			lengths = [line.ticks(plan.clock) for line, _, _ in plan.lines]
+			check_figures(plan.clock, lengths, manifest["proofs"]["colour"])
 		return f"failed as it must: {fault}"
 	raise Fault(f"{sorted(failed)} failed, but the oracle finds nothing wrong")
 

@@ -8,10 +8,11 @@ from fractions import Fraction
 import oracle_line_frame
 import oracle_machine
 from oracle_chips import Fault, bank_count
+from oracle_colour import check_figures
 from oracle_machine import codes_seen, glitch_edges, multi_bit_edges
 from oracle_plan import quantity_of
 
-PROOFS = ["closure", "signals", "colour", "power-up", "upset", "glitches", "speed", "sweep"]
+PROOFS = ["closure", "signals", "colour", "power-up", "upset", "limits", "glitches", "speed", "sweep"]
 MUSTS = {"closure", "signals", "colour", "power-up", "sweep"}
 
 
@@ -128,15 +129,7 @@ def check_colour(plan, lengths, proofs):
 	if clock.subcarrier is None:
 		verdict(proofs, "colour", "absent")
 		return
-	proof = verdict(proofs, "colour", "pass")
-	frame = clock.cycles(sum(lengths))
-	expect("colour: cycles of a frame", str(frame), proof["cycles_per_frame"])
-	expect("colour: phase repeats after frames", frame.denominator, proof["repeats_frames"])
-	uniform = len(set(lengths)) == 1
-	expect("colour: all lines alike", uniform, proof["uniform"])
-	if uniform:
-		expect("colour: cycles of a line", str(clock.cycles(lengths[0])), proof["cycles_per_line"])
-		expect("colour: phase repeats after lines", clock.cycles(lengths[0]).denominator, proof["repeats_lines"])
+	check_figures(clock, lengths, verdict(proofs, "colour", "pass"))
 
 
 def stages(plan):

@@ -83,13 +83,31 @@ static inline void harbour_timeline(struct harbour *harbour)
 	                                      .line_count = HARBOUR_LINES, .cell_count = 26462, .tick_count = 238944};
 }
 
-// 5 signals in 26462 cells are 132310 pin levels; 216 lines hold 80 cells each: 17280. 26462 states of 16 bits: 423392 flips.
 // A line of 912 ticks at a quarter of the master clock is 228 cycles, a frame 59736.
+static inline struct colour_result harbour_whole_cycles(void)
+{
+	static const struct phase_run run = {0, 1, 0, 0};
+	return (struct colour_result){.uniform = true, .cycles_per_line = {228, 1}, .cycles_per_frame = {59736, 1},
+	                              .repeats_known = true, .repeats_lines = 1, .repeats_frames = 1,
+	                              .phases = {.parts = 4, .period_lines = 1, .runs = &run, .run_count = 1}, .out_of_step.by = {0, 1}};
+}
+
+// 909 ticks a line are 909/4 cycles, and a frame of 262 of them 119079/2; four lines, or two frames, are whole.
+static inline struct colour_result harbour_quarter_cycles(void)
+{
+	static const struct phase_run run = {0, 1, 0, 1};
+	return (struct colour_result){.uniform = true, .cycles_per_line = {909, 4}, .cycles_per_frame = {119079, 2},
+	                              .repeats_known = true, .repeats_lines = 4, .repeats_frames = 2,
+	                              .phases = {.parts = 4, .period_lines = 1, .period_advance = 1, .runs = &run, .run_count = 1},
+	                              .out_of_step.by = {0, 1}};
+}
+
+// 5 signals in 26462 cells are 132310 pin levels; 216 lines hold 80 cells each: 17280. 26462 states of 16 bits: 423392 flips.
 static inline void harbour_figures(struct proofs *proofs)
 {
 	proofs->closure = (struct closure_result){262, 26462, 238944, 26462, 0x8000};
 	proofs->signals = (struct signals_result){132310, 17280};
-	proofs->colour = (struct colour_result){true, {228, 1}, {59736, 1}, true, 1, 1};
+	proofs->colour = harbour_whole_cycles();
 	proofs->power_up = (struct power_up_result){.states = 65536, .frame_states = 26462, .longest_cells = 1,
 	                                            .longest_lines = {1, 101}, .longest_ticks = 9};
 	proofs->upset = (struct upset_result){.upsets = 423392, .worst_cells = 101, .worst_cell = 300, .worst_bit = 14,
@@ -121,6 +139,7 @@ static inline void harbour_fill(struct harbour *harbour)
 	                                  .codes = harbour->codes, .code_counts = harbour->code_counts};
 	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
 		harbour->proofs.proof[kind].counterexample.signal = SIZE_MAX;
+	harbour->proofs.proof[PROOF_LIMITS].verdict = VERDICT_ABSENT;
 	harbour_figures(&harbour->proofs);
 	harbour->proofs.glitches.first = harbour->edges;
 }

@@ -122,6 +122,35 @@ static void seconds_that_do_not_fit_are_refused(void **state)
 	assert_int_equal(seconds.numerator, 7);
 }
 
+// 4 tick periods a cycle: 910 ticks are 455/2 cycles.
+static void ticks_become_cycles_of_a_subcarrier(void **state)
+{
+	(void)state;
+	struct clock clock = {.master_hz = {157500000, 11}, .has_subcarrier = true, .subcarrier_hz = {39375000, 11}};
+	struct fraction cycles = {7, 1};
+	assert_true(cycles_of_ticks(&clock, 910, &cycles));
+	assert_int_equal(cycles.numerator, 455);
+	assert_int_equal(cycles.denominator, 2);
+	clock.subcarrier_hz = (struct fraction){INT64_MAX, 1}; // times 910 ticks
+	assert_false(cycles_of_ticks(&clock, 910, &cycles));
+	assert_int_equal(cycles.numerator, 455);
+	clock.has_subcarrier = false;
+	assert_false(cycles_of_ticks(&clock, 1, &cycles));
+	assert_int_equal(cycles.numerator, 455);
+}
+
+static void exact_values_have_their_decimal_beside_them(void **state)
+{
+	(void)state;
+	struct text text = {0};
+	text_put_exact(&text, (struct fraction){455, 2});
+	assert_text(&text, "455/2 (227.5)");
+	text_put_exact(&text, (struct fraction){709379, 2500});
+	assert_text(&text, "709379/2500 (283.7516)");
+	text_put_exact(&text, (struct fraction){228, 1});
+	assert_text(&text, "228");
+}
+
 static void counts_agree_with_their_noun(void **state)
 {
 	(void)state;
@@ -288,6 +317,8 @@ int main(void)
 		cmocka_unit_test(times_stand_in_a_given_unit),
 		cmocka_unit_test(ticks_become_seconds),
 		cmocka_unit_test(seconds_that_do_not_fit_are_refused),
+		cmocka_unit_test(ticks_become_cycles_of_a_subcarrier),
+		cmocka_unit_test(exact_values_have_their_decimal_beside_them),
 		cmocka_unit_test(counts_agree_with_their_noun),
 		cmocka_unit_test(hexadecimal_has_a_digit_for_every_four_bits),
 		cmocka_unit_test(words_wrap_at_a_hundred_characters),

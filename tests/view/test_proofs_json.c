@@ -1,4 +1,5 @@
 // The results of the proofs as JSON, from results that were filled in by hand.
+#include <string.h>
 #include <stdarg.h>
 #include <stddef.h>
 #include <setjmp.h>
@@ -34,19 +35,20 @@ static void assert_proof(const struct harbour *harbour, enum proof_kind kind, co
 static void the_keys_are_the_proofs_in_order(void **state)
 {
 	(void)state;
-	static const char *const names[] = {"closure", "signals", "colour", "power-up", "upset", "glitches", "speed", "sweep"};
+	static const char *const names[] = {"closure", "signals", "colour", "power-up", "upset", "limits", "glitches", "speed",
+	                                    "sweep"};
 	struct harbour harbour;
 	harbour_fill(&harbour);
 	json_t *object = json_of(&harbour), *value;
 	const char *key;
 	size_t index = 0;
 	json_object_foreach(object, key, value) {
-		assert_true(index < 8);
+		assert_true(index < 9);
 		assert_string_equal(key, names[index++]);
-		assert_string_equal(json_string_value(json_object_get(value, "verdict")), "pass");
+		assert_string_equal(json_string_value(json_object_get(value, "verdict")), strcmp(key, "limits") == 0 ? "absent" : "pass");
 		assert_null(json_object_get(value, "counterexample"));
 	}
-	assert_int_equal(index, 8);
+	assert_int_equal(index, 9);
 	json_decref(object);
 }
 
@@ -64,7 +66,7 @@ static void the_figures_of_a_good_plan(void **state)
 	assert_proof(&harbour, PROOF_COLOUR,
 		"{'verdict':'pass','must':true,'uniform':true,'cycles_per_line':'228','cycles_per_line_rounded':228.0,"
 		"'cycles_per_frame':'59736','cycles_per_frame_rounded':59736.0,'repeats_lines':1,'repeats_frames':1,"
-		"'asked':'every line'}");
+		"'phases':{'period':1,'advance':'0','runs':[{'line':0,'lines':1,'phase':'0','advance':'0'}]},'asked':'every line'}");
 	assert_proof(&harbour, PROOF_POWER_UP,
 		"{'verdict':'pass','must':true,'states':65536,'frame_states':26462,'cleared_states':0,'longest_cells':1,"
 		"'longest_lines':'1/101','longest_lines_rounded':0.009901,'longest_ticks':'9',"
@@ -106,13 +108,15 @@ static void a_fault_of_no_byte_and_no_pin_has_no_such_keys(void **state)
 	(void)state;
 	struct harbour harbour;
 	harbour_fill(&harbour);
-	harbour.proofs.colour = (struct colour_result){true, {909, 4}, {119079, 2}, true, 4, 2};
+	harbour.proofs.colour = harbour_quarter_cycles();
+	harbour.proofs.colour.out_of_step = (struct out_of_step){true, 2, 1, {1, 4}};
 	harbour_fails(&harbour, PROOF_COLOUR, (struct counterexample){.present = true, .bank = 3, .cell = 101, .state = 101,
 		.signal = SIZE_MAX, .what = "1 line takes 909/4 cycles", .hint = "longer lines"});
 	assert_proof(&harbour, PROOF_COLOUR,
 		"{'verdict':'fail','must':true,'uniform':true,'cycles_per_line':'909/4','cycles_per_line_rounded':227.25,"
 		"'cycles_per_frame':'119079/2','cycles_per_frame_rounded':59539.5,'repeats_lines':4,'repeats_frames':2,"
-		"'asked':'every line','counterexample':{'what':'1 line takes 909/4 cycles','bank':3,'hint':'longer lines','line':1,'line_type':'border',"
+		"'phases':{'period':1,'advance':'1/4','runs':[{'line':0,'lines':1,'phase':'0','advance':'1/4'}]},"
+		"'out_of_step':{'line':2,'frame':1,'by':'1/4'},'asked':'every line','counterexample':{'what':'1 line takes 909/4 cycles','bank':3,'hint':'longer lines','line':1,'line_type':'border',"
 		"'cell':0,'region':'front porch','frame_cell':101,'state':101}}");
 	harbour.proofs.proof[PROOF_COLOUR].counterexample.state = NO_STATE;
 	json_t *proofs = view_proofs_json(&harbour.proofs);
@@ -126,14 +130,45 @@ static void figures_that_do_not_fit_are_left_out(void **state)
 	(void)state;
 	struct harbour harbour;
 	harbour_fill(&harbour);
-	harbour.proofs.colour = (struct colour_result){true, {0, 1}, {0, 1}, false, 0, 0};
+	struct colour_result *colour = &harbour.proofs.colour;
+	colour->cycles_per_line = colour->cycles_per_frame = (struct fraction){0, 1};
+	colour->repeats_known = false;
 	harbour.plan.clock.phase = PHASE_FREE;
-	assert_proof(&harbour, PROOF_COLOUR, "{'verdict':'pass','must':true,'uniform':true,'asked':'free'}");
+	assert_proof(&harbour, PROOF_COLOUR, "{'verdict':'pass','must':true,'uniform':true,'repeats_frames':1,"
+		"'phases':{'period':1,'advance':'0','runs':[{'line':0,'lines':1,'phase':'0','advance':'0'}]},'asked':'free'}");
 	// 238944 ticks of 2^63 - 1 seconds each.
 	harbour.plan.clock.master_hz = (struct fraction){1, INT64_MAX};
 	assert_proof(&harbour, PROOF_CLOSURE,
 		"{'verdict':'pass','must':true,'lines':262,'cells':26462,'ticks':'238944','period_cells':26462,"
 		"'start_state':32768,'banks':1}");
+}
+
+// 256 runs are listed, and how many more there are is said.
+static void runs_of_lines_are_bounded(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	static struct phase_run runs[COLOUR_RUNS + 2];
+	for (uint32_t run = 0; run < COLOUR_RUNS + 2; run++)
+		runs[run] = (struct phase_run){run, 1, run % 2, 1 + run % 2 * 2};
+	struct line_phases *phases = &harbour.proofs.colour.phases;
+	*phases = (struct line_phases){4, COLOUR_RUNS, 0, runs, COLOUR_RUNS};
+	json_t *proofs = view_proofs_json(&harbour.proofs);
+	json_t *shown = json_object_get(json_object_get(proofs, "colour"), "phases");
+	assert_int_equal(json_array_size(json_object_get(shown, "runs")), 256);
+	assert_null(json_object_get(shown, "more_runs"));
+	json_decref(proofs);
+	phases->run_count = phases->period_lines = COLOUR_RUNS + 2;
+	proofs = view_proofs_json(&harbour.proofs);
+	shown = json_object_get(json_object_get(proofs, "colour"), "phases");
+	assert_int_equal(json_array_size(json_object_get(shown, "runs")), 256);
+	assert_int_equal(json_integer_value(json_object_get(shown, "more_runs")), 2);
+	const json_t *last = json_array_get(json_object_get(shown, "runs"), 255);
+	assert_int_equal(json_integer_value(json_object_get(last, "line")), 255);
+	assert_string_equal(json_string_value(json_object_get(last, "phase")), "1/4");
+	assert_string_equal(json_string_value(json_object_get(last, "advance")), "3/4");
+	json_decref(proofs);
 }
 
 static void a_second_loop_has_no_place_in_the_frame(void **state)
@@ -270,6 +305,7 @@ int main(void)
 		cmocka_unit_test(a_pin_fault_names_the_byte),
 		cmocka_unit_test(a_fault_of_no_byte_and_no_pin_has_no_such_keys),
 		cmocka_unit_test(figures_that_do_not_fit_are_left_out),
+		cmocka_unit_test(runs_of_lines_are_bounded),
 		cmocka_unit_test(a_second_loop_has_no_place_in_the_frame),
 		cmocka_unit_test(disturbed_signals_are_listed),
 		cmocka_unit_test(direct_outputs_are_unsettled),

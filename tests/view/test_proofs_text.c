@@ -37,12 +37,13 @@ static void a_good_plan_has_a_line_for_each_proof(void **state)
 		"pass  closure   262 lines, 26462 cells, 238944 ticks; home in state 0x8000 after 16.688 ms\n"
 		"pass  signals   132310 pin levels and 17280 held addresses as planned\n"
 		"      load is asserted in codes of field top: 1 4 5\n"
-		"pass  colour    228 cycles a line; the phase repeats every line and every frame; asked: every line\n"
+		"pass  colour    228 cycles a line; the phase is the same at every line and frame; asked: every line\n"
 		"pass  power-up  all 65536 states come home, the longest way 1 cell (1/101 line, 0.629 us) from state\n"
 		"                0x0000\n"
 		"pass  upset     423392 flips of one bit: home after 101 cells at worst (bit 14 in line 2, cell 98),\n"
 		"                1.02 in the mean; the raster slips 50 cells (0.495 lines) at worst (bit 3 in line 1,\n"
 		"                cell 6), 0.333 in the mean\n"
+		"none  limits    the plan names no standard\n"
 		"pass  glitches  26462 cell edges, 0 with more than one bit of a decoded field changing; no decoded\n"
 		"                signal can flicker; decoded pins settle after 79 ns (latch 41 + decoder 38)\n"
 		"pass  speed     needed 226 ns of the shortest cell's 628.571 ns: latch 41 + access 150 of rom0 +\n"
@@ -76,6 +77,7 @@ static void what_the_plan_does_not_ask_is_none(void **state)
 		"none  colour    the plan has no subcarrier\n"
 		"pass  power-up  all 65536 states come home: all are states of the frame\n"
 		"pass  upset     423392 flips of one bit: home at once; the raster does not slip\n"
+		"none  limits    the plan names no standard\n"
 		"none  glitches  no signal is decoded from the state, and the data outputs are latched\n"
 		"pass  speed     needed 226 ns of the shortest cell's 628.571 ns: counter 41 + access 150 of rom0 +\n"
 		"                setup 15 + margin 20; slack 402.571 ns\n"
@@ -98,6 +100,7 @@ static void only_the_verdict_is_coloured(void **state)
 		"\033[1;31mFAIL\033[0m  colour    not judged: the frame does not close\n"
 		"\033[1;31mFAIL\033[0m  power-up  not judged: the frame does not close\n"
 		"\033[1;33mmiss\033[0m  upset     not judged: the frame does not close\n"
+		"\033[1;33mmiss\033[0m  limits    not judged: the frame does not close\n"
 		"\033[1;33mmiss\033[0m  glitches  not judged: the frame does not close\n"
 		"\033[1;33mmiss\033[0m  speed     not judged: the frame does not close\n"
 		"none  sweep     the plan asks for none\n");
@@ -124,6 +127,7 @@ static void a_fault_that_names_a_line_says_how_lines_are_counted(void **state)
 		"FAIL  colour    not judged: the frame does not close\n"
 		"FAIL  power-up  not judged: the frame does not close\n"
 		"miss  upset     not judged: the frame does not close\n"
+		"miss  limits    not judged: the frame does not close\n"
 		"miss  glitches  not judged: the frame does not close\n"
 		"miss  speed     not judged: the frame does not close\n"
 		"none  sweep     the plan asks for none\n"
@@ -203,20 +207,20 @@ static void a_long_detail_wraps_two_further_in(void **state)
 		"      load is asserted in codes of field top: 1 4 5\n");
 }
 
-// 909 ticks a line are 909/4 cycles; four lines, or two frames of 119079/2 cycles, are whole. Line 1 begins with cell 101.
+// Line 1 begins with cell 101.
 static void a_phase_that_does_not_repeat_is_shown(void **state)
 {
 	(void)state;
 	struct harbour harbour;
 	harbour_fill(&harbour);
-	harbour.proofs.colour = (struct colour_result){true, {909, 4}, {119079, 2}, true, 4, 2};
+	harbour.proofs.colour = harbour_quarter_cycles();
 	harbour.plan.clock.phase_count = 2;
 	harbour_fails(&harbour, PROOF_COLOUR, (struct counterexample){.present = true, .cell = 101, .state = 0x0065,
 		.signal = SIZE_MAX, .what = "2 lines from line 1 on take 1818 ticks, 909/2 cycles, expected a whole number; all "
 		"other such runs are whole", .hint = "the lines meet \"every 4 lines\""});
 	assert_proof(&harbour, PROOF_COLOUR,
-		"FAIL  colour    909/4 (227.25) cycles a line; the phase repeats every 4 lines and every 2 frames;\n"
-		"                asked: every 2 lines\n"
+		"FAIL  colour    909/4 (227.25) cycles a line; lines start at 0, 1/4, 1/2 and 3/4 of a cycle in turn;\n"
+		"                the phase repeats every 4 lines and every 2 frames; asked: every 2 lines\n"
 		"      2 lines from line 1 on take 1818 ticks, 909/2 cycles, expected a whole number; all other such\n"
 		"        runs are whole\n"
 		"      at line 1 (border), cell 0 (front porch); cell 101 of the frame, state 0x0065\n"
@@ -224,35 +228,85 @@ static void a_phase_that_does_not_repeat_is_shown(void **state)
 	// Before images are made there are no states.
 	harbour.proofs.proof[PROOF_COLOUR].counterexample.state = NO_STATE;
 	assert_proof(&harbour, PROOF_COLOUR,
-		"FAIL  colour    909/4 (227.25) cycles a line; the phase repeats every 4 lines and every 2 frames;\n"
-		"                asked: every 2 lines\n"
+		"FAIL  colour    909/4 (227.25) cycles a line; lines start at 0, 1/4, 1/2 and 3/4 of a cycle in turn;\n"
+		"                the phase repeats every 4 lines and every 2 frames; asked: every 2 lines\n"
 		"      2 lines from line 1 on take 1818 ticks, 909/2 cycles, expected a whole number; all other such\n"
 		"        runs are whole\n"
 		"      at line 1 (border), cell 0 (front porch); cell 101 of the frame\n"
 		"      hint: the lines meet \"every 4 lines\"\n");
 }
 
+// Two kinds of lines, of 683/3 cycles and of 228, in a frame of 262: 178946/3 = 59648 2/3 cycles.
 static void colour_names_what_is_asked(void **state)
 {
 	(void)state;
 	struct harbour harbour;
 	harbour_fill(&harbour);
-	struct proofs *proofs = &harbour.proofs;
-	proofs->colour = (struct colour_result){false, {683, 3}, {178946, 3}, true, 786, 3};
+	static const struct phase_run runs[] = {{0, 18, 0, 2}, {18, 1, 0, 0}, {19, 242, 0, 2}, {261, 1, 1, 0}};
+	harbour.proofs.colour = (struct colour_result){.cycles_per_line = {683, 3}, .cycles_per_frame = {178946, 3}, .repeats_known = true,
+		.repeats_lines = 786, .repeats_frames = 3, .phases = {3, 262, 1, runs, 4}, .out_of_step.by = {0, 1}};
 	harbour.plan.clock.phase = PHASE_FREE;
 	assert_proof(&harbour, PROOF_COLOUR,
 		"pass  colour    lines differ, the first has 683/3 (227.666667) cycles; 178946/3 (59648.666667)\n"
-		"                cycles a frame; the phase repeats every 786 lines and every 3 frames; asked: free\n");
-	proofs->colour = (struct colour_result){true, {0, 1}, {0, 1}, false, 0, 0};
+		"                cycles a frame; the phase advances by 2/3 of a cycle in 260 lines and stays in 2\n"
+		"                (line 18 first); lines start at 0, 1/3 or 2/3; the phase repeats every 786 lines and\n"
+		"                every 3 frames; asked: free\n");
+}
+
+static void colour_that_does_not_fit_is_said_plainly(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	struct colour_result *colour = &harbour.proofs.colour;
+	static const struct phase_run run = {0, 1, 0, 1};
+	*colour = (struct colour_result){.uniform = true, .cycles_per_line = {0, 1}, .cycles_per_frame = {0, 1},
+		.phases = {2500, 1, 1879, &run, 1}, .out_of_step.by = {0, 1}};
 	harbour.plan.clock.phase = PHASE_FRAMES;
 	assert_proof(&harbour, PROOF_COLOUR,
-		"pass  colour    cycles a line or frame are too fine to count; the phase repeats too seldom to count;\n"
-		"                asked: every frame\n");
+		"pass  colour    cycles a line or frame do not fit 64 bits; the phase advances by 1879/2500 (0.7516)\n"
+		"                of a cycle a line and repeats too seldom to count; asked: every frame\n");
 	harbour.plan.clock.phase_count = 3;
-	proofs->colour.cycles_per_line = (struct fraction){228, 1};
-	proofs->colour.cycles_per_frame = (struct fraction){59736, 1};
+	colour->cycles_per_line = (struct fraction){228, 1};
+	colour->cycles_per_frame = (struct fraction){59736, 1};
 	assert_proof(&harbour, PROOF_COLOUR,
-		"pass  colour    228 cycles a line; the phase repeats too seldom to count; asked: every 3 frames\n");
+		"pass  colour    228 cycles a line; the phase advances by 1879/2500 (0.7516) of a cycle a line and\n"
+		"                repeats too seldom to count; asked: every 3 frames\n");
+}
+
+static void show_runs(struct harbour *harbour, const struct phase_run *runs, uint32_t count, int64_t advance, const char *expected)
+{
+	harbour->proofs.colour.uniform = false;
+	harbour->proofs.colour.repeats_lines = 20960;
+	harbour->proofs.colour.repeats_frames = 80;
+	harbour->proofs.colour.phases = (struct line_phases){80, 131, advance, runs, count};
+	assert_proof(harbour, PROOF_COLOUR, expected);
+}
+
+// In a frame of 262 lines, so that a period of 131 comes twice. A cycle has 80 parts.
+static void lines_that_advance_the_phase_differently(void **state)
+{
+	(void)state;
+	struct harbour harbour;
+	harbour_fill(&harbour);
+	static const struct phase_run kept[] = {{0, 83, 0, 0}, {83, 1, 0, 20}, {84, 46, 20, 0}, {130, 1, 20, 20}};
+	show_runs(&harbour, kept, 4, 40,
+		"pass  colour    lines differ, the first has 228 cycles; 59736 cycles a frame; the phase stays in 258\n"
+		"                lines and advances by 1/4 of a cycle in 4 (line 83 first); lines start at 0, 1/4,\n"
+		"                1/2 or 3/4; the phase repeats every 20960 lines and every 80 frames; asked: every\n"
+		"                line\n");
+	static const struct phase_run three[] = {{0, 1, 0, 20}, {1, 129, 20, 0}, {130, 1, 20, 60}};
+	show_runs(&harbour, three, 3, 0,
+		"pass  colour    lines differ, the first has 228 cycles; 59736 cycles a frame; the phase advances by\n"
+		"                1/4 of a cycle in 2 lines, stays in 258 (line 1 first) and advances by 3/4 in 2\n"
+		"                (line 130 first); lines start at 0 or 1/4; the phase repeats every 20960 lines and\n"
+		"                every 80 frames; asked: every line\n");
+	static const struct phase_run many[] = {{0, 1, 0, 1}, {1, 2, 1, 2}, {3, 100, 5, 3}, {103, 20, 65, 4}, {123, 8, 65, 5}};
+	show_runs(&harbour, many, 5, 25,
+		"pass  colour    lines differ, the first has 228 cycles; 59736 cycles a frame; the phase advances by\n"
+		"                1/80 of a cycle in 2 lines, by 1/40 in 4 (line 1 first), by 3/80 in 200 (line 3\n"
+		"                first) and otherwise in 56; the phase repeats every 20960 lines and every 80 frames;\n"
+		"                asked: every line\n");
 }
 
 static void a_second_loop_is_shown(void **state)
@@ -518,6 +572,8 @@ int main(void)
 		cmocka_unit_test(a_long_detail_wraps_two_further_in),
 		cmocka_unit_test(a_phase_that_does_not_repeat_is_shown),
 		cmocka_unit_test(colour_names_what_is_asked),
+		cmocka_unit_test(colour_that_does_not_fit_is_said_plainly),
+		cmocka_unit_test(lines_that_advance_the_phase_differently),
 		cmocka_unit_test(a_second_loop_is_shown),
 		cmocka_unit_test(long_ways_home_count_lines),
 		cmocka_unit_test(cleared_states_are_not_of_the_frame),

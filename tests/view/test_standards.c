@@ -27,8 +27,8 @@ static const struct limit harbour_limits[] = {
 static const struct burst_pause harbour_pauses[] = {{2, 264, 272, "sheet three"}};
 static const char *const harbour_notes[] = {"one sheet says this, another that; this was taken"};
 static const struct standard harbour_standards[] = {
-	{"quay-525", "signals of the quay", "sheets one to three", 2, 4, harbour_limits, 6, harbour_pauses, 1, harbour_notes, 1},
-	{"lock", "signals of the lock", "none", 1, 0, harbour_limits, 2, NULL, 0, NULL, 0},
+	{"quay-525", "signals of the quay", "sheets one to three", 2, 4, harbour_limits, 6, harbour_pauses, 1, harbour_notes, 1, 0},
+	{"lock", "signals of the lock", "none", 1, 0, harbour_limits, 2, NULL, 0, NULL, 0, 0},
 };
 static const struct standards harbour = {harbour_standards, 2};
 

@@ -1,0 +1,341 @@
+#include "view/limits.h"
+
+#include <inttypes.h>
+#include <string.h>
+
+#include "base/text.h"
+#include "view/columns.h"
+#include "view/figures.h"
+#include "view/standards.h"
+
+#define COUNT_OF(array) (sizeof(array) / sizeof((array)[0]))
+
+static const struct plan *plan_of_proofs(const struct proofs *proofs)
+{
+	return proofs->timeline->plan;
+}
+
+static enum limit_grade other_grade(const struct proofs *proofs)
+{
+	return plan_of_proofs(proofs)->grade == GRADE_STUDIO ? GRADE_MONITOR : GRADE_STUDIO;
+}
+
+static const struct limit *limit_at(const struct proofs *proofs, enum limit_item item, enum limit_grade grade)
+{
+	return standard_limit(plan_of_proofs(proofs)->standard, item, grade);
+}
+
+// Values at 3 decimals, as times are everywhere; frequencies at 6.
+static void put_value(struct text *out, enum limit_item item, struct fraction value)
+{
+	struct fraction scaled;
+	const struct limit_item_facts *facts = limit_item_facts(item);
+	if (facts->is_polarity)
+		put_limit_value(out, item, value);
+	else if (limit_value_in_unit(item, value, &scaled))
+		text_put_rounded(out, scaled, strcmp(facts->unit, "MHz") == 0 ? 6 : 3);
+	else
+		text_put(out, "?");
+}
+
+static void put_interval(struct text *out, enum limit_item item, struct interval values)
+{
+	struct text low = {0}, high = {0};
+	put_value(&low, item, values.low);
+	put_value(&high, item, values.high);
+	text_put(out, text_string(&low));
+	if (strcmp(text_string(&low), text_string(&high)) != 0)
+		text_printf(out, " to %s", text_string(&high));
+	out->failed = out->failed || low.failed || high.failed;
+	text_release(&low);
+	text_release(&high);
+}
+
+static void put_unit(struct text *out, enum limit_item item)
+{
+	const char *unit = limit_item_facts(item)->unit;
+	if (unit[0] != '\0')
+		text_printf(out, " %s", unit);
+}
+
+// The table.
+
+enum { COLUMN_ITEM, COLUMN_UNIT, COLUMN_MEASURED, COLUMN_NOMINAL, COLUMN_LOW, COLUMN_HIGH, COLUMN_MARGIN, COLUMN_VERDICT, COLUMN_OTHER };
+
+struct limits_view {
+	const struct proofs *proofs;
+	enum limit_item items[ITEM_COUNT]; // that were measured and have a limit
+	size_t count;
+};
+
+static bool has_limit(const struct proofs *proofs, enum limit_item item)
+{
+	const struct limit_verdict *grades = proofs->limits.rows[item].grades;
+	return grades[GRADE_STUDIO].has_limit || grades[GRADE_MONITOR].has_limit;
+}
+
+static void put_given(struct text *out, enum limit_item item, bool given, struct fraction value)
+{
+	if (given)
+		put_value(out, item, value);
+	else
+		text_put(out, "-");
+}
+
+static void put_verdict(struct text *out, const struct limit_verdict *verdict)
+{
+	if (!verdict->has_limit)
+		text_put(out, "-");
+	else if (!verdict->known)
+		text_put(out, "unknown");
+	else if (!verdict->judgement.binds)
+		text_put(out, "info");
+	else
+		text_put(out, verdict->judgement.kept ? "kept" : "MISSED");
+}
+
+static void put_limit_column(struct text *out, enum limit_item item, const struct limit *limit, size_t column)
+{
+	if (limit == NULL)
+		text_put(out, "-");
+	else if (column == COLUMN_NOMINAL)
+		put_given(out, item, limit->has_nominal, limit->nominal);
+	else if (column == COLUMN_LOW)
+		put_given(out, item, limit->has_low, limit->low);
+	else
+		put_given(out, item, limit->has_high, limit->high);
+}
+
+static void put_table_cell(struct text *out, const void *context, size_t row, size_t column)
+{
+	const struct limits_view *view = context;
+	const struct proofs *proofs = view->proofs;
+	const enum limit_item item = view->items[row];
+	const struct limit_verdict *verdicts = proofs->limits.rows[item].grades;
+	const struct limit_verdict *verdict = &verdicts[plan_of_proofs(proofs)->grade];
+	switch (column) {
+	case COLUMN_ITEM: text_put(out, limit_item_facts(item)->name); break;
+	case COLUMN_UNIT: text_put(out, limit_item_facts(item)->unit); break;
+	case COLUMN_MEASURED: put_interval(out, item, proofs->limits.measurement->items[item].values); break;
+	case COLUMN_MARGIN:
+		if (verdict->known && verdict->judgement.binds && !limit_item_facts(item)->is_polarity)
+			put_value(out, item, verdict->judgement.margin);
+		else
+			text_put(out, "-");
+		break;
+	case COLUMN_VERDICT: put_verdict(out, verdict); break;
+	case COLUMN_OTHER: put_verdict(out, &verdicts[other_grade(proofs)]); break;
+	default: put_limit_column(out, item, limit_at(proofs, item, plan_of_proofs(proofs)->grade), column); break;
+	}
+}
+
+static void put_standard_name(struct text *out, const struct proofs *proofs)
+{
+	const struct standard *standard = plan_of_proofs(proofs)->standard;
+	text_put(out, standard->name);
+	if (standard->own_limits > 0 && strcmp(standard->name, "own") != 0) {
+		text_put(out, " with ");
+		text_put_count(out, standard->own_limits, "limit of the plan's own", "limits of the plan's own");
+	}
+}
+
+// Puts the names of all items that were not measured for one reason, from the first that has it.
+static void put_unmeasured(struct text *out, const struct proofs *proofs, size_t first)
+{
+	const struct measured *items = proofs->limits.measurement->items;
+	struct text words = {0};
+	text_printf(&words, "not measured, as %s:", items[first].why);
+	for (size_t item = first; item < ITEM_COUNT; item++)
+		if (has_limit(proofs, (enum limit_item)item) && !items[item].known && strcmp(items[item].why, items[first].why) == 0)
+			text_printf(&words, "%s %s", item == first ? "" : ",", limit_item_facts((enum limit_item)item)->name);
+	text_put_wrapped(out, text_string(&words), 0, 2);
+	text_put(out, "\n");
+	out->failed = out->failed || words.failed;
+	text_release(&words);
+}
+
+static void put_all_unmeasured(struct text *out, const struct proofs *proofs)
+{
+	const struct measured *items = proofs->limits.measurement->items;
+	for (size_t item = 0; item < ITEM_COUNT; item++) {
+		bool told = items[item].known || !has_limit(proofs, (enum limit_item)item);
+		for (size_t before = 0; before < item && !told; before++)
+			told = has_limit(proofs, (enum limit_item)before) && !items[before].known && strcmp(items[before].why, items[item].why) == 0;
+		if (!told)
+			put_unmeasured(out, proofs, item);
+	}
+}
+
+#define MOST_RUNS 8u // of lines without burst, in text; JSON has them all
+
+static void put_burstless(struct text *out, const struct measurement *measurement)
+{
+	struct text words = {0};
+	if (!measurement->items[ITEM_LINES_WITHOUT_BURST].known || !measurement->numbered)
+		return;
+	text_put(&words, "lines without burst, by the standard's numbers:");
+	for (uint32_t run = 0; run < measurement->burstless_count && run < MOST_RUNS; run++) {
+		const struct burstless *lines = &measurement->burstless[run];
+		text_printf(&words, "%s %" PRId64, run > 0 ? "," : "", lines->first_line);
+		if (lines->last_line != lines->first_line)
+			text_printf(&words, " to %" PRId64, lines->last_line);
+	}
+	if (measurement->burstless_count > MOST_RUNS)
+		text_printf(&words, " and %" PRIu32 " more runs", measurement->burstless_count - MOST_RUNS);
+	if (measurement->burstless_count == 0)
+		text_put(&words, " none");
+	text_put(&words, measurement->pauses_kept ? ", as the standard has it" : "; the standard has others");
+	text_put_wrapped(out, text_string(&words), 0, 2);
+	text_put(out, "\n");
+	out->failed = out->failed || words.failed;
+	text_release(&words);
+}
+
+void view_limits(struct text *out, const struct proofs *proofs)
+{
+	const enum limit_grade grade = proofs->limits.measurement == NULL ? GRADE_MONITOR : plan_of_proofs(proofs)->grade;
+	const struct column columns[] = {
+		[COLUMN_ITEM] = {"item", false},     [COLUMN_UNIT] = {"unit", false}, [COLUMN_MEASURED] = {"measured", true},
+		[COLUMN_NOMINAL] = {"nominal", true}, [COLUMN_LOW] = {"low", true},    [COLUMN_HIGH] = {"high", true},
+		[COLUMN_MARGIN] = {"margin", true},  [COLUMN_VERDICT] = {limit_grade_name(grade), false},
+		[COLUMN_OTHER] = {limit_grade_name(grade == GRADE_STUDIO ? GRADE_MONITOR : GRADE_STUDIO), false},
+	};
+	struct limits_view view = {.proofs = proofs};
+	if (proofs->limits.measurement == NULL || proofs->limits.measurement->flaw != NULL)
+		return;
+	for (size_t item = 0; item < ITEM_COUNT; item++)
+		if (has_limit(proofs, (enum limit_item)item) && proofs->limits.measurement->items[item].known)
+			view.items[view.count++] = (enum limit_item)item;
+	const struct columns table = {columns, COUNT_OF(columns), view.count, put_table_cell, &view};
+	text_put(out, "limits of ");
+	put_standard_name(out, proofs);
+	text_printf(out, ", grade %s%s\n", limit_grade_name(grade),
+	            plan_of_proofs(proofs)->clock.has_accuracy ? "; margins with the clock's accuracy" : "");
+	view_columns(out, &table, TERMINAL_CHARACTERS);
+	put_all_unmeasured(out, proofs);
+	put_burstless(out, proofs->limits.measurement);
+}
+
+// In words.
+
+static void put_grade_counts(struct text *out, const struct limits_result *limits, enum limit_grade grade)
+{
+	const unsigned judged = limits->kept[grade] + limits->missed[grade];
+	if (limits->missed[grade] == 0)
+		text_printf(out, "all %u limits kept at %s grade", judged, limit_grade_name(grade));
+	else
+		text_printf(out, "%u of %u limits kept at %s grade", limits->kept[grade], judged, limit_grade_name(grade));
+}
+
+void put_limits_figures(struct text *out, const struct proofs *proofs)
+{
+	const struct limits_result *limits = &proofs->limits;
+	const enum limit_grade grade = plan_of_proofs(proofs)->grade;
+	if (plan_of_proofs(proofs)->standard == NULL) {
+		text_put(out, "the plan names no standard");
+		return;
+	}
+	put_standard_name(out, proofs);
+	text_put(out, ": ");
+	put_grade_counts(out, limits, grade);
+	text_put(out, "; ");
+	put_grade_counts(out, limits, other_grade(proofs));
+	if (limits->unknown[grade] > 0)
+		text_printf(out, "; %u could not be measured", limits->unknown[grade]);
+}
+
+bool limit_is_missed(const struct proofs *proofs, enum limit_item item)
+{
+	if (plan_of_proofs(proofs)->standard == NULL)
+		return false;
+	const struct limit_verdict *verdict = &proofs->limits.rows[item].grades[plan_of_proofs(proofs)->grade];
+	return verdict->known && verdict->judgement.binds && !verdict->judgement.kept;
+}
+
+static void put_allowed(struct text *out, const struct limit *limit)
+{
+	if (limit->has_low && limit->has_high && fraction_compare(limit->low, limit->high) == 0) {
+		put_value(out, limit->item, limit->low);
+	} else if (limit->has_low && limit->has_high) {
+		put_value(out, limit->item, limit->low);
+		text_put(out, " to ");
+		put_value(out, limit->item, limit->high);
+	} else {
+		text_put(out, limit->has_low ? "at least " : "at most ");
+		put_value(out, limit->item, limit->has_low ? limit->low : limit->high);
+	}
+	put_unit(out, limit->item);
+}
+
+static void put_place(struct text *out, const struct timeline *timeline, uint32_t cell)
+{
+	const struct cell_place place = timeline_place(timeline, cell);
+	text_printf(out, "line %" PRIu32 " (%s), cell %" PRIu32 " (%s)", place.line, timeline_line_name(timeline, cell), place.cell,
+	            timeline_region_name(timeline, cell));
+}
+
+// Whether what was measured is too low, rather than too high.
+static bool is_too_low(const struct proofs *proofs, const struct limit *limit)
+{
+	return limit->has_low && fraction_compare(proofs->limits.rows[limit->item].values.low, limit->low) < 0;
+}
+
+void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_item item)
+{
+	const struct limit *limit = limit_at(proofs, item, plan_of_proofs(proofs)->grade);
+	const struct measured *measured = &proofs->limits.measurement->items[item];
+	struct fraction off = proofs->limits.rows[item].grades[limit->grade].judgement.margin;
+	const uint32_t cell = is_too_low(proofs, limit) ? measured->low_at.from_cell : measured->high_at.from_cell;
+	text_printf(out, "%s is ", limit_item_facts(item)->name);
+	put_interval(out, item, measured->values);
+	put_unit(out, item);
+	text_put(out, ", allowed ");
+	put_allowed(out, limit);
+	if (off.numerator < 0 && !limit_item_facts(item)->is_polarity) {
+		off.numerator = -off.numerator;
+		text_put(out, ": ");
+		put_value(out, item, off);
+		put_unit(out, item);
+		text_put(out, is_too_low(proofs, limit) ? " too little" : " too much");
+	}
+	if (cell == UINT32_MAX || item == ITEM_PIXEL_CLOCK || item == ITEM_SUBCARRIER)
+		return;
+	text_put(out, "; at ");
+	put_place(out, proofs->timeline, cell);
+}
+
+static void put_direction(struct text *out, int64_t cells, const char *less, const char *more)
+{
+	text_put(out, " ");
+	text_put_count(out, (uint64_t)(cells < 0 ? -cells : cells), "cell", "cells");
+	text_printf(out, " %s", cells < 0 ? less : more);
+}
+
+bool put_limit_move(struct text *out, const struct proofs *proofs, enum limit_item item)
+{
+	const struct limit_verdict *verdict = &proofs->limits.rows[item].grades[plan_of_proofs(proofs)->grade];
+	const struct timeline *timeline = proofs->timeline;
+	const uint32_t cell = verdict->move_cell, before = cell == 0 ? timeline->cell_count - 1 : cell - 1;
+	switch (verdict->move) {
+	case MOVE_NONE:
+		return false;
+	case MOVE_EDGE:
+		text_printf(out, "move the edge between \"%s\" and \"%s\"", timeline_region_name(timeline, before), timeline_region_name(timeline, cell));
+		put_direction(out, verdict->move_cells, "earlier", "later");
+		break;
+	case MOVE_PICTURE:
+		text_put(out, "move the picture");
+		put_direction(out, verdict->move_cells, "earlier", "later");
+		break;
+	case MOVE_LENGTH:
+		text_put(out, "make the lines");
+		put_direction(out, verdict->move_cells, "shorter", "longer");
+		break;
+	}
+	if (item == ITEM_LINE_RATE)
+		return true;
+	text_put(out, ": then ");
+	put_interval(out, item, verdict->moved);
+	put_unit(out, item);
+	return true;
+}

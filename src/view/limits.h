@@ -1,0 +1,30 @@
+// The measured limits for people and for programs.
+#ifndef SCANLATCH_VIEW_LIMITS_H
+#define SCANLATCH_VIEW_LIMITS_H
+
+#include <jansson.h>
+
+#include "proof/proof.h"
+
+struct text;
+
+// Puts a table of what was measured beside the standard's limits at the plan's grade, with the verdict of the other grade in the last
+// column; then what could not be measured, and the lines without burst. Only where the plan names a standard that was measured. When memory is
+// out, out->failed is set.
+void view_limits(struct text *out, const struct proofs *proofs);
+
+// Puts the counts, in words, without line breaks.
+void put_limits_figures(struct text *out, const struct proofs *proofs);
+
+// True if a limit that binds is missed at the plan's grade. Cannot fail.
+bool limit_is_missed(const struct proofs *proofs, enum limit_item item);
+
+// Puts a missed limit, in words, without line breaks: measured, allowed, where.
+void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_item item);
+// The same: which edge to move to keep it. False, with nothing put, if no whole number of cells does.
+bool put_limit_move(struct text *out, const struct proofs *proofs, enum limit_item item);
+
+// Sets the keys that limits has beside those of every proof, see view/proofs.h.
+void json_put_limits(json_t **object, const struct proofs *proofs);
+
+#endif
