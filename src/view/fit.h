@@ -13,8 +13,8 @@
 //         "limits": { "binding", "kept", "share" and "tightest" (the smallest of times, rates and cycles, and whose it is; absent if no
 //             limit that is kept has one), "items": [ { "item", "unit", "value", "kept", "margin", "share" } ] } } ],
 //     "nearest": crystals without a layout, nearest first, [ { "crystal", "condition", "why" } ] }
-// Fractions are strings, and NAME_rounded is their decimal. In "items" values and margins are in base units (seconds, hertz, lines,
-// cycles, pulses) and their decimals in "unit"; kept, margin and share are there if the limit binds, share if the limit is not one value.
+// Fractions are strings, and NAME_rounded is their decimal. In "items" values and margins are in the item's unit; kept, margin and
+// share are there if the limit binds, share if the limit is not one value.
 #ifndef SCANLATCH_VIEW_FIT_H
 #define SCANLATCH_VIEW_FIT_H
 

@@ -33,20 +33,15 @@ static void json_put_ticks(json_t **object, const char *key, int64_t ticks, stru
 		json_put_time(object, key, seconds, UNIT_MICROSECONDS);
 }
 
-// A value of an item: exact in base units, rounded in the item's.
+// A value of an item, in its unit.
 static void json_put_value(json_t **object, const char *key, enum limit_item item, struct fraction value)
 {
 	const char *unit = limit_item_facts(item)->unit;
-	struct text rounded = {0};
 	struct fraction scaled = value;
-	if (strcmp(unit, "us") == 0)
-		(void)fraction_multiply(value, fraction_whole(1000000), &scaled);
-	else if (strcmp(unit, "MHz") == 0)
-		(void)fraction_divide(value, fraction_whole(1000000), &scaled);
-	text_printf(&rounded, "%s_rounded", key);
-	json_put(object, key, json_fraction(value));
-	json_put(object, text_string(&rounded), json_rounded(scaled));
-	text_release(&rounded);
+	const bool fits = strcmp(unit, "us") == 0 ? fraction_multiply(value, fraction_whole(1000000), &scaled)
+	                                          : strcmp(unit, "MHz") != 0 || fraction_divide(value, fraction_whole(1000000), &scaled);
+	if (fits)
+		json_put_fraction(object, key, scaled);
 }
 
 static json_t *json_of_item(const struct fit_item *item)

@@ -25,11 +25,12 @@ static bool is_positive(const struct writing *writing, enum limit_item item)
 // Puts words as a comment, broken between them.
 static void put_comment(struct text *out, const char *words)
 {
-	size_t used = COMMENT_CHARACTERS;
+	size_t used = 1;
+	text_put(out, "#");
 	while (*words != '\0') {
 		const size_t length = strcspn(words, " ");
-		if (used + 1 + length > COMMENT_CHARACTERS) {
-			text_put(out, used == COMMENT_CHARACTERS ? "#" : "\n#");
+		if (used > 1 && used + 1 + length > COMMENT_CHARACTERS) {
+			text_put(out, "\n#");
 			used = 1;
 		}
 		text_put(out, " ");
@@ -44,7 +45,8 @@ static void put_line_words(struct text *words, const struct writing *writing)
 {
 	const struct fit_line *line = &writing->layout->line;
 	struct fraction cycles;
-	text_printf(words, "A line is %" PRId64 " cells of %" PRId64 " dots", line->cells, line->cell_dots);
+	text_printf(words, "A line is %" PRId64 " cells of %" PRId64 " dot%s", line->cells, line->cell_dots,
+	            line->cell_dots == 1 ? "" : "s");
 	if (line->stretched > 0)
 		text_printf(words, ", %" PRId64 " of them stretched by %" PRId64 ",", line->stretched, line->stretch_dots);
 	text_printf(words, " at %s: %" PRId64 " ticks", writing->space->crystals[line->crystal].name, line->ticks);
