@@ -61,6 +61,7 @@ struct part;
 #define FIT_LIMIT_STRETCHED 64
 #define FIT_LIMIT_TOP 1000
 #define FIT_LIMIT_TICKS 65536     // of a line: faster crystals are not tried
+#define FIT_LIMIT_CELLS 1000000   // of a space: ticks of a dot x dots of a cell x stretches of a cell x stretched cells
 #define FIT_LIMIT_CHOICES 4000000 // of a crystal, that meet all conditions and may yet be among the best
 #define FIT_BROAD_LINES 8         // at most, where the standard does not fix the lines of the frame
 
@@ -175,8 +176,8 @@ struct fit_result {
 
 enum fit_status { FIT_OK, FIT_OUT_OF_MEMORY, FIT_TOO_MANY, FIT_UNFIT };
 
-// Searches the space; the result is in the arena. Nothing is changed unless it is FIT_OK. FIT_TOO_MANY: a crystal has more than
-// FIT_LIMIT_CHOICES choices. FIT_UNFIT: a limit of a layout that was found could not be judged in 64-bit fractions.
+// Searches the space; the result is in the arena. Nothing is changed unless it is FIT_OK. FIT_TOO_MANY: it has more than FIT_LIMIT_CELLS
+// kinds of cells, or a crystal more than FIT_LIMIT_CHOICES choices. FIT_UNFIT: a limit of a layout that was found could not be judged in 64-bit fractions.
 enum fit_status fit_search(struct arena *arena, const struct fit_space *space, struct fit_result *result);
 
 // Lines with picture that a standard has, halves left out: the published height of a field, or the middle of its range. 0 if it has none.

@@ -170,9 +170,18 @@ static bool begin_search(struct search *search)
 	       search->result.obstacles != NULL && fit_frames_begin(&search->frames, arena, space);
 }
 
+// Is the space small enough to be gone through? Counts are within the limits of fit.h, so that their product fits.
+static bool is_small(const struct fit_space *space)
+{
+	const int64_t stretches = fit_has_colour(space->standard) ? space->cell_dots[space->cell_dot_count - 1] * space->most_stretched : 0;
+	return (int64_t)(space->dot_tick_count * space->cell_dot_count) * (stretches + 1) <= FIT_LIMIT_CELLS;
+}
+
 enum fit_status fit_search(struct arena *arena, const struct fit_space *space, struct fit_result *result)
 {
 	struct search search = {.arena = arena, .space = space};
+	if (!is_small(space))
+		return FIT_TOO_MANY;
 	enum fit_status status = begin_search(&search) ? search_crystals(&search) : FIT_OUT_OF_MEMORY;
 	if (status == FIT_OK)
 		status = complete_layouts(&search);

@@ -263,7 +263,7 @@ static bool search(struct asking *asking)
 	switch (fit_search(fit->arena, &fit->space, &fit->result)) {
 	case FIT_OK: return true;
 	case FIT_TOO_MANY:
-		return refuse(asking, "dots-per-cell: there are more than %d choices for a crystal; ask for fewer", FIT_LIMIT_CHOICES);
+		return refuse(asking, "dots-per-cell: with ticks-per-dot and stretched there are too many kinds of cells; ask for fewer");
 	case FIT_UNFIT: return refuse(asking, "crystal: figures of a layout do not fit fractions of 64 bits");
 	default: return forget(asking);
 	}

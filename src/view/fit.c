@@ -201,7 +201,7 @@ static void put_tables(struct text *out, const struct found *found)
 	view_columns(out, &lines, TERMINAL_CHARACTERS);
 	text_put(out, "\n");
 	view_columns(out, &rates, TERMINAL_CHARACTERS);
-	text_put(out, "\nCells of a line from 0H, (stretched) of them; lines of the frame from 0V: sync, border, picture, border\n\n");
+	text_put(out, "\nCells from 0H, (stretched) of them; lines of the frame from 0V: sync, border, picture, border\n\n");
 	view_columns(out, &edges, TERMINAL_CHARACTERS);
 }
 
