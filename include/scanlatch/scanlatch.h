@@ -63,7 +63,7 @@ const char *scanlatch_plan_chip_label(const scanlatch_plan *plan, size_t chip);
 size_t scanlatch_plan_chip_bytes(const scanlatch_plan *plan, size_t chip);
 
 /* What `scanlatch check` reports. *kept (may be NULL) is set to false if the colour phase, which is a must, is not what the plan
- * demands, *advice_kept if the speed does not suffice. NULL when memory is out. */
+ * demands, *advice_kept if the speed does not suffice or a limit of its standard is missed. NULL when memory is out. */
 char *scanlatch_plan_text(const scanlatch_plan *plan, bool *kept, bool *advice_kept);
 /* The same as a JSON document. */
 char *scanlatch_plan_json(const scanlatch_plan *plan, bool *kept, bool *advice_kept);

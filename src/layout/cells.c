@@ -30,8 +30,11 @@ static bool is_stretched(const struct plan *plan, uint64_t asserted)
 	return signal >= 0 && (asserted >> signal & 1) != 0;
 }
 
-static void measure_line(const struct plan *plan, const struct line_type *line, struct laid_line *laid)
+void layout_measure_line(struct layout *layout, size_t type)
 {
+	const struct plan *plan = layout->plan;
+	const struct line_type *line = &plan->lines[type];
+	struct laid_line *laid = &layout->types[type];
 	laid->ticks = 0;
 	for (size_t index = 0; index < line->region_count; index++) {
 		struct laid_region *place = &laid->regions[index];
@@ -59,9 +62,9 @@ bool layout_cells(struct layout *layout, size_t type)
 		good = fill_region(layout, line, laid, index) && good;
 	if (!good)
 		return false;
-	measure_line(layout->plan, line, laid);
+	layout_measure_line(layout, type);
 	if (!layout_auto_stretch(layout, type))
 		return false;
-	measure_line(layout->plan, line, laid);
+	layout_measure_line(layout, type);
 	return true;
 }

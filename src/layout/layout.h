@@ -20,6 +20,9 @@ bool layout_regions(struct layout *layout, size_t type);
 // Fills the cells of a line type whose regions are laid: regions, asserted signals, stretched cells (page 2.5), ticks. False after reporting.
 bool layout_cells(struct layout *layout, size_t type);
 
+// Finds lengths and positions of a line type's regions from its stretched cells. Cannot fail.
+void layout_measure_line(struct layout *layout, size_t type);
+
 // Stretches the fewest cells that `stretch: auto` allows for the line to meet its phase, leftmost. False after reporting.
 bool layout_auto_stretch(struct layout *layout, size_t type);
 

@@ -4,6 +4,7 @@
 
 #include "base/arena.h"
 #include "layout/divider.h"
+#include "layout/placement.h"
 
 static bool report_memory(const struct plan *plan, struct diagnostics *diagnostics)
 {
@@ -18,9 +19,13 @@ static bool lay_types(struct timeline *timeline, struct line_faults *faults, str
 	if (timeline->types == NULL)
 		return report_memory(plan, diagnostics);
 	struct layout layout = {timeline->arena, plan, diagnostics, faults, timeline->types, 0};
+	struct placements *placements = arena_alloc(timeline->arena, sizeof *placements);
 	bool good = true;
 	for (size_t type = 0; type < plan->line_count; type++)
 		good = layout_regions(&layout, type) && layout_cells(&layout, type) && good;
+	if (good && (placements == NULL || !layout_place_stretch(&layout, placements)))
+		return report_memory(plan, diagnostics);
+	timeline->placements = placements;
 	return good;
 }
 

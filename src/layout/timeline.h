@@ -43,10 +43,13 @@ struct timeline {
 	uint32_t cell_count;           // F
 	int64_t tick_count;            // T
 	uint64_t *asserted;            // [cell_count]
+	const struct placements *placements; // how `stretch: auto` chose, see placement.h
 	bool has_holds;
 	uint32_t *hold_mask;           // [cell_count], NULL without holds: the state bits that are held
 	uint32_t *hold_value;          // [cell_count]: their values (0 elsewhere)
 };
+
+struct placements;
 
 // Lays out a plan. NULL with diagnostics on any error. Freed with timeline_destroy; the plan must outlive it.
 struct timeline *timeline_create(const struct plan *plan, struct diagnostics *diagnostics);

@@ -151,13 +151,13 @@ char *scanlatch_plan_text(const scanlatch_plan *plan, bool *kept, bool *advice_k
 	}
 	for (size_t index = 0; index < plan->member_count; index++) {
 		const struct member *member = &plan->members[index];
-		bool colour_kept = true, speed_kept = true;
+		bool colour_kept = true, advised = true;
 		text_put(&text, index > 0 ? "\n" : "");
 		view_banks(&text, member->plan, member->banks, member->bank_count);
-		if (!view_check(&text, member->timeline, &colour_kept, &speed_kept))
+		if (!view_check(&text, member->timeline, &colour_kept, &advised))
 			text.failed = true;
 		keep_both(kept, colour_kept);
-		keep_both(advice_kept, speed_kept);
+		keep_both(advice_kept, advised);
 	}
 	return take_string(&text);
 }
@@ -178,10 +178,10 @@ char *scanlatch_plan_json(const scanlatch_plan *plan, bool *kept, bool *advice_k
 		return take_json(view_check_json(plan->members[0].timeline, kept, advice_kept));
 	json_t *object = json_object(), *banks = json_array();
 	for (size_t index = 0; index < plan->member_count; index++) {
-		bool colour_kept = true, speed_kept = true;
-		json_append(&banks, member_json(&plan->members[index], &colour_kept, &speed_kept));
+		bool colour_kept = true, advised = true;
+		json_append(&banks, member_json(&plan->members[index], &colour_kept, &advised));
 		keep_both(kept, colour_kept);
-		keep_both(advice_kept, speed_kept);
+		keep_both(advice_kept, advised);
 	}
 	json_put(&object, "name", json_string(scanlatch_plan_name(plan)));
 	json_put(&object, "banks", banks);

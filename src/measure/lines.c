@@ -1,8 +1,30 @@
-// What normal lines show: those from a normal pulse to the next.
+// What normal lines show: those that begin with a normal pulse and end with any.
+#include <string.h>
+
+#include "base/arena.h"
 #include "measure/tally.h"
+
+static void note_instance(struct instrument *instrument, struct measured_instance instance)
+{
+	struct measured_instances *all = instrument->instances;
+	if (all->count == all->capacity) {
+		const size_t capacity = all->capacity == 0 ? 1024 : 2 * all->capacity;
+		struct measured_instance *list = arena_array(instrument->arena, capacity, sizeof *list);
+		instrument->out_of_memory = instrument->out_of_memory || list == NULL;
+		if (list == NULL)
+			return;
+		if (all->count > 0)
+			memcpy(list, all->list, all->count * sizeof *list);
+		all->list = list;
+		all->capacity = capacity;
+	}
+	all->list[all->count++] = instance;
+}
 
 void tally_add(struct instrument *instrument, enum limit_item item, int64_t raw, uint32_t from_cell, uint32_t to_cell)
 {
+	if (instrument->instances != NULL && item_is_of_line(item))
+		note_instance(instrument, (struct measured_instance){item, raw, from_cell, to_cell});
 	struct tally *tally = &instrument->tallies[item];
 	const struct extreme found = {raw, {from_cell, to_cell}};
 	if (!tally->any || raw < tally->least.raw)

@@ -79,12 +79,28 @@ static const char *missing_signal(const struct instrument *instrument, enum need
 	return need == NEED_COMPOSITE && trace->separate ? "sync is horizontal and vertical, not composite" : NULL;
 }
 
+bool item_is_of_line(enum limit_item item)
+{
+	return rows[item].base == BASE_TIME || (rows[item].base == BASE_CYCLES && item != ITEM_CYCLES_PER_LINE);
+}
+
+// Raw values are half ticks.
+bool measured_value(const struct clock *clock, enum limit_item item, int64_t raw, struct fraction *value)
+{
+	struct fraction half_ticks, cycles_per_tick;
+	if (!fraction_make(raw, 2, &half_ticks))
+		return false;
+	if (rows[item].base == BASE_TIME)
+		return fraction_divide(half_ticks, clock->master_hz, value);
+	return fraction_divide(clock->subcarrier_hz, clock->master_hz, &cycles_per_tick) &&
+	       fraction_multiply(cycles_per_tick, half_ticks, value);
+}
+
 // A raw value in the unit of the item's dimension. False if it does not fit.
-static bool value_of(const struct instrument *instrument, enum base base, int64_t raw, struct fraction *value)
+static bool value_of(const struct instrument *instrument, enum limit_item item, int64_t raw, struct fraction *value)
 {
 	const struct clock *clock = &instrument->trace->plan->clock;
-	struct fraction half_ticks;
-	switch (base) {
+	switch (rows[item].base) {
 	case BASE_RATE:
 		return fraction_divide(clock->master_hz, fraction_whole(raw), value);
 	case BASE_LINES:
@@ -94,12 +110,10 @@ static bool value_of(const struct instrument *instrument, enum base base, int64_
 		*value = fraction_whole(raw);
 		return true;
 	case BASE_TIME:
-		return fraction_make(raw, 2, &half_ticks) && fraction_divide(half_ticks, clock->master_hz, value);
 	case BASE_CYCLES:
 		break;
 	}
-	return fraction_divide(clock->subcarrier_hz, clock->master_hz, value) && fraction_make(raw, 2, &half_ticks) &&
-	       fraction_multiply(*value, half_ticks, value);
+	return measured_value(clock, item, raw, value);
 }
 
 // Of rates the raw values are periods: the least of these is the highest rate.
@@ -116,7 +130,8 @@ static void settle_item(const struct instrument *instrument, enum limit_item ite
 		result->why = row->absent;
 	if (result->why != NULL)
 		return;
-	if (!value_of(instrument, row->base, low->raw, &result->values.low) || !value_of(instrument, row->base, high->raw, &result->values.high)) {
+	if (!value_of(instrument, item, low->raw, &result->values.low) ||
+	    !value_of(instrument, item, high->raw, &result->values.high)) {
 		result->why = TOO_LONG;
 		return;
 	}
@@ -175,6 +190,37 @@ static bool look(struct instrument *instrument, const struct recording *recordin
 	return instrument->trace != NULL && raster_find(instrument->arena, instrument->trace, &instrument->raster, flaw);
 }
 
+// Looks at a frame, at two laps of it if it is odd. False when memory is out.
+static bool look_well(struct instrument *instrument, const struct recording *recording, const char **flaw)
+{
+	struct recording preferring = *recording;
+	preferring.prefer_separate = standard_limit(instrument->standard, ITEM_HORIZONTAL_POLARITY, GRADE_STUDIO) != NULL;
+	return look(instrument, &preferring, 1, flaw) &&
+	       (*flaw != NULL || !raster_is_odd(&instrument->raster) || look(instrument, &preferring, 2, flaw));
+}
+
+bool measure_instances(struct arena *arena, const struct recording *recording, const struct standard *standard,
+                       struct measured_instances *instances)
+{
+	const char *flaw;
+	struct instrument *instrument = arena_alloc(arena, sizeof *instrument);
+	*instances = (struct measured_instances){NULL, 0, 0};
+	if (instrument == NULL)
+		return false;
+	instrument->arena = arena;
+	instrument->standard = standard;
+	instrument->instances = instances;
+	if (!look_well(instrument, recording, &flaw))
+		return false;
+	if (flaw != NULL)
+		return true;
+	if (!view_lines(instrument))
+		return false;
+	measure_lines(instrument);
+	measure_fields(instrument);
+	return !instrument->out_of_memory;
+}
+
 const struct measurement *measure_recording(struct arena *arena, const struct recording *recording, const struct standard *standard)
 {
 	struct measurement *result = arena_alloc(arena, sizeof *result);
@@ -183,13 +229,7 @@ const struct measurement *measure_recording(struct arena *arena, const struct re
 		return NULL;
 	instrument->arena = arena;
 	instrument->standard = standard;
-	struct recording preferring = *recording;
-	preferring.prefer_separate = standard_limit(standard, ITEM_HORIZONTAL_POLARITY, GRADE_STUDIO) != NULL;
-	if (!look(instrument, &preferring, 1, &result->flaw))
-		return NULL;
-	if (result->flaw == NULL && raster_is_odd(&instrument->raster) && !look(instrument, &preferring, 2, &result->flaw))
-		return NULL;
-	if (result->flaw == NULL && !measure_raster(instrument, result))
+	if (!look_well(instrument, recording, &result->flaw) || (result->flaw == NULL && !measure_raster(instrument, result)))
 		return NULL;
 	settle(instrument, result);
 	return result;

@@ -48,4 +48,24 @@ struct measurement {
 // items, whether separate sync signals are preferred to composite sync. NULL when memory is out; it belongs to the arena.
 const struct measurement *measure_recording(struct arena *arena, const struct recording *recording, const struct standard *standard);
 
+// One value of an item, among those of a frame.
+struct measured_instance {
+	enum limit_item item;
+	int64_t raw;                   // in raw units, see measured_value
+	uint32_t from_cell, to_cell;
+};
+
+struct measured_instances {
+	struct measured_instance *list;
+	size_t count, capacity;
+};
+
+// Every value that a line shows of items that are times, or subcarrier cycles of burst, in a frame, always in the same order. An
+// empty list if there is no raster in the frame. False when memory is out; the list belongs to the arena.
+bool measure_instances(struct arena *arena, const struct recording *recording, const struct standard *standard,
+                       struct measured_instances *instances);
+
+// A raw value of such an item in the unit of the item's dimension. False, with *value as it was, if it does not fit.
+bool measured_value(const struct clock *clock, enum limit_item item, int64_t raw, struct fraction *value);
+
 #endif

@@ -36,7 +36,12 @@ struct instrument {
 	struct line_view *views;       // [raster.line_count]
 	bool first_half_used, second_half_used; // by the picture of most lines
 	struct tally tallies[ITEM_COUNT];
+	struct measured_instances *instances; // to be noted too; NULL if not
+	bool out_of_memory;            // there was no room for an instance
 };
+
+// True for times, and for the cycles of burst. Cannot fail.
+bool item_is_of_line(enum limit_item item);
 
 void tally_add(struct instrument *instrument, enum limit_item item, int64_t raw, uint32_t from_cell, uint32_t to_cell);
 

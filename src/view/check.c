@@ -13,6 +13,7 @@
 #include "view/divider.h"
 #include "view/figures.h"
 #include "view/limits.h"
+#include "view/placement.h"
 #include "view/proofs.h"
 
 // A line type on its way to a table.
@@ -239,6 +240,7 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 		for (size_t type = 0; type < plan->line_count; type++)
 			put_line(out, timeline, type, uses[type]);
 		put_frame(out, timeline);
+		view_placement(out, timeline);
 		good = put_suggestion(out, timeline, arena);
 		text_put(out, "\n");
 		view_chips(out, plan);

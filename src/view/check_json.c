@@ -1,6 +1,7 @@
 #include <inttypes.h>
 
 #include "base/arena.h"
+#include "layout/placement.h"
 #include "layout/timeline.h"
 #include "proof/proof.h"
 #include "view/check.h"
@@ -8,6 +9,7 @@
 #include "view/divider.h"
 #include "view/figures.h"
 #include "view/frame.h"
+#include "view/placement.h"
 #include "view/proofs.h"
 
 static json_t *ticks_json(int64_t ticks)
@@ -164,6 +166,8 @@ json_t *view_check_json(const struct timeline *timeline, bool *kept, bool *advic
 	json_put(&object, "divider", view_divider_json(&timeline->plan->clock));
 	json_put(&object, "lines", lines_json(timeline));
 	json_put(&object, "frame", view_frame_json(timeline));
+	if (timeline->placements != NULL && timeline->placements->judged)
+		json_put(&object, "stretch_auto", view_placement_json(timeline));
 	if (timeline->plan->machine.form == FORM_LINE_FRAME)
 		json_put(&object, "suits_frame_stage", suited_json(timeline));
 	json_put(&object, "chips", view_chips_json(timeline->plan));
