@@ -178,8 +178,10 @@ bool fit_measure(const struct fit_space *space, struct fit_layout *layout)
 		                          .limit = standard_limit(space->standard, (enum limit_item)index, space->grade)};
 		if (item->limit == NULL || !is_measured(layout, separate, item->item))
 			continue;
-		if (!value_of(&figures, item->item, &item->value) ||
-		    !limit_judge(item->limit, (struct interval){item->value, item->value}, &item->judgement))
+		if (!value_of(&figures, item->item, &item->value))
+			return false;
+		item->judgement = limit_judge(item->limit, (struct interval){item->value, item->value});
+		if (item->judgement.binds && !item->judgement.has_margin)
 			return false;
 		layout->item_count++;
 		count_judgement(layout, item);

@@ -29,8 +29,8 @@ void fit_meter_open(struct fit_meter *meter, enum limit_item item, struct fracti
 
 static struct fit_mark judge(struct fit_meter *meter, const struct limit *limit, struct fraction value)
 {
-	struct judgement judgement;
-	if (!limit_judge(limit, (struct interval){value, value}, &judgement)) {
+	const struct judgement judgement = limit_judge(limit, (struct interval){value, value});
+	if (!judgement.has_margin) {
 		meter->unfit = true;
 		return (struct fit_mark){0};
 	}

@@ -31,7 +31,7 @@ proves 'colour, 525, every 2 lines' '1 7' --standard composite-525 --columns 40 
 	--dots-per-cell 12-16
 proves 'colour, 525, free' '1' --standard composite-525 --columns 40 --phase free --width 90 --crystal '7.15909 MHz' \
 	--dots-per-cell 1-9
-proves 'colour, 525, three columns' '1' --standard composite-525 --columns 3 --width 10 --dots-per-cell 1-256 --crystal '3.579545 MHz'
+proves 'colour, 525, three columns' '1' --standard composite-525 --columns 3 --width 10 --dots-per-cell 1-60 --crystal '3.579545 MHz'
 proves 'colour, 625' '1 3' --standard composite-625 --columns 80 --width 80
 proves 'monochrome' '1 5' --standard mono-525 --columns 80 --width 90
 proves 'component, 525' '1' --standard component-525 --columns 90 --width 95 --crystal '13.5 MHz'
