@@ -180,7 +180,8 @@ enum fit_status { FIT_OK, FIT_OUT_OF_MEMORY, FIT_TOO_MANY, FIT_UNFIT };
 // kinds of cells, or a crystal more than FIT_LIMIT_CHOICES choices. FIT_UNFIT: a limit of a layout that was found could not be judged in 64-bit fractions.
 enum fit_status fit_search(struct arena *arena, const struct fit_space *space, struct fit_result *result);
 
-// Lines with picture that a standard has, halves left out: the published height of a field, or the middle of its range. 0 if it has none.
+// Lines with picture that a standard has, halves left out: the published height of a field, or the middle of its range. 0 if it
+// has none.
 int64_t fit_default_lines(const struct standard *standard);
 
 // The published width of the picture, or the middle of its range. False, with *width_s as it was, if there is none.

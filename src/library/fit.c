@@ -46,6 +46,12 @@ static bool forget(struct asking *asking)
 	return false;
 }
 
+// Texts that must be given.
+static bool is_given(struct asking *asking, const char *name, const char *text)
+{
+	return text != NULL || refuse(asking, "%s: wanted a text, found none", name);
+}
+
 static bool in_range(struct asking *asking, const char *name, unsigned value, unsigned least, unsigned most)
 {
 	return (value >= least && value <= most) || refuse(asking, "%s: wanted %u to %u, found %u", name, least, most, value);
@@ -243,6 +249,9 @@ static bool make_space(struct asking *asking)
 	space->parts = catalogue_load(fit->arena, fit->diagnostics);
 	if (space->parts == NULL)
 		return forget(asking);
+	if (!is_given(asking, "grade", request->grade) || !is_given(asking, "phase", request->phase) ||
+	    !is_given(asking, "ticks-per-dot", request->ticks_per_dot) || !is_given(asking, "dots-per-cell", request->dots_per_cell))
+		return false;
 	if (!find_standard(asking) || !in_range(asking, "columns", request->columns, 1, FIT_LIMIT_COLUMNS) || !find_lines(asking) ||
 	    !find_crystals(asking) || !find_grade(asking) || !find_phase(asking) ||
 	    !find_numbers(asking, "ticks-per-dot", request->ticks_per_dot, &space->dot_ticks, &space->dot_tick_count) ||

@@ -5,7 +5,8 @@
 //     "choices": that meet all conditions, "judged": of those whose edges were sought,
 //     "layouts": best first, [ { "rank": from 1, "crystal", "master_hz", "dot_ticks", "cell_dots", "cell_ticks", "cells",
 //         "stretched": cells of a line, "stretch_dots", "stretch_ticks" (both only if there are any), "ticks",
-//         "subcarrier_divisor", "cycles" of a line (both with colour only), "line_hz", "field_hz", "picture_share" of the published width,
+//         "subcarrier_divisor", "cycles" of a line (both with colour only), "picture_share" of the published width, "line_hz",
+//         "field_hz",
 //         "regions": from 0H, [ { "region", "cells", "stretched", "ticks", "start_s", "start_us", "length_s", "length_us" } ], "serration": the same without
 //         start (composite sync only),
 //         "frame": { "lines", "cells", "broad_lines" or "vertical_sync_lines", "picture_top", "picture_lines" },

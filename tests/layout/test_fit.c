@@ -208,8 +208,12 @@ struct failing {
 // 3.579545 MHz: 233 ticks at most a line, so 80 cells of 6 are too long; 25 MHz is 6.98 times the subcarrier; 8 cells of 16 ticks of
 // 14.3 MHz are 9 us; its lines have 900 to 933 ticks, between 14 and 15 cells of 64; 300 lines do not fit into those of 56 Hz; cells of one tick of 28.6 MHz last 35 ns each.
 static const struct failing failing[] = {
-	{"25 MHz", 80, 242, 8, FIT_SUBCARRIER}, {"3.579545 MHz", 80, 242, 6, FIT_ROOM},      {"14.31818 MHz", 8, 242, 16, FIT_WIDTH},
-	{"14.31818 MHz", 8, 242, 64, FIT_LINE_RATE}, {"14.31818 MHz", 80, 300, 9, FIT_HEIGHT}, {"28.63636 MHz", 1000, 242, 1, FIT_MEMORY},
+	{"25 MHz", 80, 242, 8, FIT_SUBCARRIER},
+	{"3.579545 MHz", 80, 242, 6, FIT_ROOM},
+	{"14.31818 MHz", 8, 242, 16, FIT_WIDTH},
+	{"14.31818 MHz", 8, 242, 64, FIT_LINE_RATE},
+	{"14.31818 MHz", 80, 300, 9, FIT_HEIGHT},
+	{"28.63636 MHz", 1000, 242, 1, FIT_MEMORY},
 };
 
 static void each_condition_is_told(void **state)
