@@ -1,3 +1,4 @@
+#include <assert.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -115,8 +116,12 @@ static bool complete(struct search *search, struct fit_crystal *crystal, const s
 	const struct fit_standing floor = {.kept = kept, .count = 1, .shares = {rank->share}};
 	struct fit_standing standing;
 	*layout = (struct fit_layout){.line = rank->line, .frame = rank->frame, .memory = rank->memory};
-	return judge(crystal, &rank->line, &floor, FIT_STANDING_SHARES, layout, &standing) && fit_measure(search->space, layout) &&
-	       !fit_crystal_is_unfit(crystal);
+	if (!judge(crystal, &rank->line, &floor, FIT_STANDING_SHARES, layout, &standing) || !fit_measure(search->space, layout) ||
+	    fit_crystal_is_unfit(crystal))
+		return false;
+	assert(layout->kept == rank->kept); // two ways to reckon the same
+	assert(!layout->has_share || fraction_compare(layout->share, rank->share) == 0);
+	return true;
 }
 
 static enum fit_status complete_crystal(struct search *search, size_t index, struct arena *arena)

@@ -111,6 +111,39 @@ static void states_need_bits(void **state)
 	assert_int_equal(fit_state_bits(32769), 16);
 }
 
+// Each rank counts only among equals of all before it.
+static void ranks_are_total(void **state)
+{
+	(void)state;
+	const struct fit_line line = {.crystal = 1, .dot_ticks = 2, .cell_dots = 8, .cells = 100, .stretched = 1, .stretch_ticks = 4,
+	                              .cycle_ticks = 4};
+	const struct fit_rank first = {.line = line, .frame = {.lines = 262}, .memory = {.chips = 2}, .kept = 9, .share = {1, 2}};
+	struct fit_rank ranks[10];
+	for (size_t index = 0; index < COUNT_OF(ranks); index++)
+		ranks[index] = first;
+	ranks[0].kept = 8;
+	ranks[1].share = one_over(3);
+	ranks[2].frame.lines = 263;
+	ranks[3].memory.chips = 3;
+	ranks[4].line.stretched = 2;
+	ranks[5].line.stretch_ticks = 6;
+	ranks[6].line.crystal = 2;
+	ranks[7].line.dot_ticks = 3;
+	ranks[8].line.cell_dots = 9;
+	ranks[9].line.cells = 131; // 200 lines: as many cells of the frame
+	ranks[9].frame.lines = 200;
+	assert_int_equal(fit_rank_compare(&first, &first), 0);
+	for (size_t index = 0; index < COUNT_OF(ranks); index++) {
+		assert_true(fit_rank_compare(&first, &ranks[index]) < 0);
+		assert_true(fit_rank_compare(&ranks[index], &first) > 0);
+		for (size_t later = index + 1; later < COUNT_OF(ranks); later++)
+			assert_true(fit_rank_compare(&ranks[index], &ranks[later]) > 0);
+	}
+	fit_ranks_sort(ranks, COUNT_OF(ranks));
+	assert_int_equal(ranks[0].line.cells, 131);
+	assert_int_equal(ranks[9].kept, 8);
+}
+
 struct published_mode {
 	const char *standard, *crystal;
 	int64_t columns, front_porch, sync, back_porch; // characters of 8 dots
@@ -373,6 +406,7 @@ int main(void)
 	const struct CMUnitTest tests[] = {
 		cmocka_unit_test(standings_are_sorted_and_compared_from_the_smallest),
 		cmocka_unit_test(states_need_bits),
+		cmocka_unit_test(ranks_are_total),
 		cmocka_unit_test(published_modes_are_found_again),
 		cmocka_unit_test(the_house_example_is_a_choice),
 		cmocka_unit_test(the_studio_wants_half_cycles_and_half_lines),

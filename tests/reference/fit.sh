@@ -30,6 +30,7 @@ agrees composite-525 monitor 'every line' 1 62 242 1 12,13 2 50 10 '14.31818 MHz
 agrees composite-525 monitor 'every 2 lines' 2 45 216 1,2 8,16 1 50 200 '14.31818 MHz' '7.15909 MHz'
 agrees composite-525 monitor free 0 40 242 1 9 1 0 12 '7.15909 MHz'
 agrees composite-525 monitor 'every line' 1 40 100 2,3 9 3 0 40 '14.31818 MHz'
+agrees composite-525 monitor 'every line' 1 44 242 2 9 7 50 60 '14.31818 MHz'
 agrees composite-525 studio 'every line' 1 64 242 1 12 1 50 10 '14.31818 MHz'
 agrees composite-625 monitor 'every line' 1 70 287 1 13,14 2 60 10 '17.734475 MHz' '13.300856 MHz'
 agrees composite-625 monitor 'every 2 lines' 2 46 240 1,2 9,10 1 50 25 '8.867238 MHz' '17.734475 MHz'
