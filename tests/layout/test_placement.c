@@ -105,7 +105,8 @@ static void most_limits_then_leftmost(void **state)
 	assert_share(&placements->second, 1, 1);
 	assert_stretched(&laid, 1, "S..S..............");
 	assert_int_equal(laid.timeline->types[1].ticks, 168);
-	assert_int_equal(laid.timeline->types[1].regions[3].start_ticks, 51); // 2 + 1 + 2 cells and two stretches
+	assert_int_equal(laid.timeline->types[1].regions[2].start_ticks, 30); // 2 + 1 cells and a stretch
+	assert_int_equal(laid.timeline->types[1].regions[2].stretched, 1);
 	release(&laid);
 }
 

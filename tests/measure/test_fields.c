@@ -110,14 +110,14 @@ static void vertical_sync_that_is_uneven(void **state)
 	assert_int_equal(found->burstless[0].field, 0);
 	assert_int_equal(found->burstless[0].first_line, 1);
 	erase(drawn);
-	drawn = DRAW("hhvv------------", "hhb-------------", "hhb-------------", "hh--vv----------", "hhb-------------", "hhb-------------");
+	drawn = DRAW("hhvv------------", "hhb-------------", "hhb-------------", "hh--vv----------", "hh--------------", "hhb-------------");
 	drawn->standard.vertical_sync_line = 1;
 	found = measure(drawn);
 	assert_int_equal(found->burstless_count, 2);
 	for (uint32_t run = 0; run < 2; run++) {
 		assert_int_equal(found->burstless[run].field, run);
 		assert_int_equal(found->burstless[run].first_line, 1);
-		assert_int_equal(found->burstless[run].last_line, 1);
+		assert_int_equal(found->burstless[run].last_line, 1 + run);
 	}
 	erase(drawn);
 }

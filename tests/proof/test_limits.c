@@ -265,13 +265,15 @@ static void what_is_unknown_is_not_missed(void **state)
 	(void)state;
 	struct board *board = board_of("", SIGNALS, FRAME, "{ part: 28C64 }");
 	board->plan->grade = GRADE_MONITOR;
+	add_limit(board, ITEM_EQUALISING_WIDTH, GRADE_STUDIO, "1 us"); // for information: nothing is amiss without it
 	add_limit(board, ITEM_EQUALISING_WIDTH, GRADE_MONITOR, "at most 1 us");
 	// A number that does not fit: the difference of the bounds needs more than 64 bits.
-	board->limits[1] = (struct limit){.item = ITEM_BROAD_WIDTH, .grade = GRADE_MONITOR, .has_low = true, .low = {1, INT64_MAX},
+	board->limits[2] = (struct limit){.item = ITEM_BROAD_WIDTH, .grade = GRADE_MONITOR, .has_low = true, .low = {1, INT64_MAX},
 	                                  .nominal = FRACTION_ZERO, .high = FRACTION_ZERO};
-	board->standard.limit_count = 2;
+	board->standard.limit_count = 3;
 	const struct limits_result *limits = judge(board);
 	assert_int_equal(limits->unknown[GRADE_MONITOR], 2);
+	assert_int_equal(limits->unknown[GRADE_STUDIO], 0);
 	assert_int_equal(limits->kept[GRADE_MONITOR] + limits->missed[GRADE_MONITOR], 0);
 	assert_int_equal(board->proofs->proof[PROOF_LIMITS].verdict, VERDICT_PASS);
 	release(board);
