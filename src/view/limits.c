@@ -25,7 +25,13 @@ static const struct limit *limit_at(const struct proofs *proofs, enum limit_item
 	return standard_limit(plan_of_proofs(proofs)->standard, item, grade);
 }
 
-// Values at 3 decimals, as times are everywhere; frequencies at 6.
+// Values at 3 decimals, as times are everywhere; frequencies below 100 at 6, since the limits of field rates are as narrow as that.
+static unsigned places_of(enum limit_item item, struct fraction scaled)
+{
+	const int64_t size = scaled.numerator / scaled.denominator;
+	return limit_item_facts(item)->dimension == DIMENSION_FREQUENCY && size > -100 && size < 100 ? 6 : 3;
+}
+
 static void put_value(struct text *out, enum limit_item item, struct fraction value)
 {
 	struct fraction scaled;
@@ -33,7 +39,7 @@ static void put_value(struct text *out, enum limit_item item, struct fraction va
 	if (facts->is_polarity)
 		put_limit_value(out, item, value);
 	else if (limit_value_in_unit(item, value, &scaled))
-		text_put_rounded(out, scaled, facts->dimension == DIMENSION_FREQUENCY ? 6 : 3);
+		text_put_rounded(out, scaled, places_of(item, scaled));
 	else
 		text_put(out, "?");
 }
