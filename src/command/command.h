@@ -38,6 +38,7 @@ int command_build(int argument_count, char **arguments);
 int command_check(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
+int command_schema(int argument_count, char **arguments);
 
 // Long options without a short one: values above any character.
 enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING };

@@ -10,12 +10,13 @@ const struct command commands[] = {
 	{"build", "make the images of plans or sets, prove them and write them", command_build},
 	{"prove", "prove images that are there against their plan or set", command_prove},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
+	{"schema", "print a JSON Schema of plans, sets, boards or reports", command_schema},
 };
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
 static const char *const later_commands[] = {"diff",     "draw",  "sheet",  "fit", "lift",
-                                             "readback", "probe", "export", "schema"};
+                                             "readback", "probe", "export"};
 
 static void print_help(FILE *out)
 {
