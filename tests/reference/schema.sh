@@ -46,9 +46,39 @@ schema_validators.schema('$name')"
 done
 same 'without a name, the schema of plans' "$("$SCANLATCH" schema plan | cksum)" "$("$SCANLATCH" schema | cksum)"
 
-plans=(plans/*.yaml tests/good/*.yaml)
+# Keys that no other plan has, and values in forms that are rare.
+cat >"$work/rare.yaml" <<'PLAN'
+scanlatch: "1"
+name: 2024
+note:
+standard:
+  base: composite-525
+  limits: { horizontal sync width: 4.7 us +- 10000 ppm, front porch: 1.5 us (1.4 us to 1.6 us), breezeway: at least 0.4 us,
+    burst length in cycles: 8 cycles to 11 cycles, line rate: exactly 4500000/286 Hz, horizontal sync polarity: negative }
+grade: studio
+clock: { master: 315/22MHz, accuracy: 0 ppm, dot: 2/2 ticks, cell: 9 dots, stretch: 3 tick, subcarrier: master/4, phase: every 1 line }
+signals:
+  true: { role: composite sync, active: low, from: { field: code, codes: [0x1, "0"] } }
+  stretch: { role: stretch, active: "high", lead: 4/2 cells, from: data }
+lines:
+  1: { cells: "6", regions: [ { region: 1.5, cells: 0x2, assert: [true] }, { region: rest, fill: true, hold: { code: 2 } } ] }
+  2: { like: 1, change: [ { region: rest, cells: 4, stretch: "0", hold: { code: "(2)" } } ] }
+frame: [ { repeat: 1, line: 1 }, { repeat: 0x1, line: 2 } ]
+machine: { form: loop, state: 8/2 bits, fields: { code: 3..2, low_bit: 0 }, start: "0x0", outputs: registered, advance: table }
+parts: { 2716: { address pins: 4, data pins: "8", access: [100 ns, 0.12 us], package: 24 } }
+chips:
+  - { label: 7, part: 2716, speed: 120ns, address: [state.0, state.1, state.2, state.3],
+      data: [next.0, next.1, next.2, next.3, stretch, -, -, -] }
+timing: { latch: 74HC574, counter: 74HC163, decoder: 74HC138, latch delay: 30 ns, latch setup: 0 ns, counter delay: 30 ns,
+  counter setup: 10 ns, decoder delay: 20 ns, share: 1, margin: 1 ns }
+sweep: [ { bits: code.1..0, within: 1 s } ]
+PLAN
+"$SCANLATCH" check "$work/rare.yaml" >/dev/null 2>"$work/messages"
+holds 'the reader takes rare forms too' test "$?" -le 1
+same 'the reader takes rare forms too: messages' '' "$(cat "$work/messages")"
+plans=(plans/*.yaml tests/good/*.yaml "$work/rare.yaml")
 "$python" -B tests/reference/schema_good.py "${plans[@]}" >"$work/good" 2>&1
-same 'good plans, sets and boards are accepted' '' "$(cat "$work/good")"
+same 'good plans, sets and boards are accepted, and have every key of the languages' '' "$(cat "$work/good")"
 
 stage tests/bad "$work/bad" || fail 'tests/bad can be copied'
 form=$(rules_of FORM | grep -v '^yaml-' | tr '\n' ' ')

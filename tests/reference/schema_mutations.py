@@ -23,7 +23,7 @@ WHY_UNSEEN = [
     ("bad-bits", r"\w+: wanted one bit or hi\.\.lo, found \"\d+\.\.\d+\"", "no pattern compares hi and lo"),
     ("bad-bits", r"\w+: wanted one bit or hi\.\.lo, found \"\d{4,}", "nor tells how large a bit is"),
     ("bad-number", r"[a-z ]+: wanted \d+ to \d+ bits, found \"[\d./]+ ?bits?\"", "no pattern compares a quantity's number"),
-    ("bad-number", r"share: wanted n/m, .* found \"[\d.]+/[\d.]+\"", "nor numerator and denominator"),
+    ("bad-number", r"share: wanted n/m, .* found \"[\d.]+(/[\d.]+)?\"", "nor numerator and denominator"),
     ("bad-number", r"start: ", "how large start may be depends on the state bits"),
     ("bad-number", r"bank: ", "how large a bank's number may be depends on the bank bits"),
     ("bad-quantity", r"lead: wanted a whole number of cells", "no pattern divides"),
