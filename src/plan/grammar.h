@@ -28,11 +28,10 @@ enum shape_kind {
 
 // What a text may also be where YAML takes it for a value of another kind (YAML 1.2.2, section 10.3.2): the name 2024 for a number.
 enum {
-	ALSO_WHOLE = 1,   // an integer from 0 on
-	ALSO_INTEGER = 2,
-	ALSO_NUMBER = 4,
-	ALSO_SHARE = 8,   // a number above 0, at most 1
-	ALSO_TRUTH = 16,
+	ALSO_WHOLE = 1,  // an integer from 0 on
+	ALSO_NUMBER = 2,
+	ALSO_SHARE = 4,  // a number above 0, at most 1
+	ALSO_TRUTH = 8,
 };
 
 enum quantity_sign { QUANTITY_POSITIVE, QUANTITY_NOT_NEGATIVE, QUANTITY_SIGNED };

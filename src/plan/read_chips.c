@@ -55,7 +55,7 @@ enum { CHIP_LABEL, CHIP_PART, CHIP_SPEED, CHIP_ADDRESS, CHIP_DATA, CHIP_STAGE, C
 #define LETTERS "ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz"
 
 static const struct shape label_shape = {
-	.kind = SHAPE_TEXT, .pattern = "[A-Za-z0-9_-]+", .most = LONGEST_LABEL, .also = ALSO_INTEGER | ALSO_TRUTH,
+	.kind = SHAPE_TEXT, .pattern = "[A-Za-z0-9_-]+", .most = LONGEST_LABEL, .also = ALSO_NUMBER | ALSO_TRUTH,
 };
 
 #define LONG_FORM_KEYS \

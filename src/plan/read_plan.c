@@ -78,7 +78,7 @@ static const char *const versions[] = {"1"};
 const struct shape version_shape = {.kind = SHAPE_CHOICE, .words = versions, .word_count = COUNT_OF(versions)};
 const struct shape file_stem_shape = {
 	.kind = SHAPE_TEXT, .about = "1 to 100 lower-case letters, digits and -, not starting with -",
-	.pattern = "[a-z0-9][a-z0-9-]*", .most = STEM_CHARACTERS, .also = ALSO_WHOLE | ALSO_TRUTH,
+	.pattern = "[a-z0-9][a-z0-9-]*", .most = STEM_CHARACTERS, .also = ALSO_NUMBER | ALSO_TRUTH,
 };
 
 void read_version(struct reader *reader, const struct node *node, const char *what)

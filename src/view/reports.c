@@ -32,16 +32,22 @@ static json_t *load(const struct report_file *file)
 	return json_loadb((const char *)file->bytes, file->length, JSON_REJECT_DUPLICATES, NULL);
 }
 
+// Adds the keys of an object that is read only. Like json_put, gives *object up when memory is out.
+static void put_all(json_t **object, json_t *from)
+{
+	if (*object != NULL && from != NULL && json_object_update(*object, from) == 0)
+		return;
+	json_decref(*object);
+	*object = NULL;
+}
+
 // All definitions that reports share. A new reference; NULL when memory is out.
 static json_t *shared_definitions(void)
 {
 	json_t *all = json_object();
-	for (const struct report_file *file = report_files; all != NULL && file->name != NULL; file++) {
+	for (const struct report_file *file = report_files; file->name != NULL; file++) {
 		json_t *definitions = file->shared ? load(file) : json_object();
-		if (definitions == NULL || json_object_update_missing(all, definitions) != 0) {
-			json_decref(all);
-			all = NULL;
-		}
+		put_all(&all, definitions);
 		json_decref(definitions);
 	}
 	return all;
@@ -69,14 +75,16 @@ static void add_used(json_t **used, const json_t *all, json_t *part)
 json_t *view_report_schema(size_t report)
 {
 	json_t *schema = json_pack("{s:s}", "$schema", "https://json-schema.org/draft/2020-12/schema");
-	json_t *own = load(file_of(report)), *all = shared_definitions(), *definitions = json_object_get(own, "$defs");
-	json_t *used = definitions != NULL ? json_copy(definitions) : json_object();
-	add_used(&used, all, own);
-	if (schema == NULL || own == NULL || all == NULL || json_object_update(schema, own) != 0) {
-		json_decref(schema);
-		schema = NULL;
-	}
-	json_put(&schema, "$defs", used);
+	json_t *own = load(file_of(report)), *all = shared_definitions(), *used = json_object();
+	json_t *definitions = json_object_get(own, "$defs");
+	if (definitions != NULL)
+		put_all(&used, definitions);
+	if (all != NULL)
+		add_used(&used, all, own);
+	put_all(&schema, own);
+	json_put(&schema, "$defs", all != NULL ? used : NULL);
+	if (all == NULL)
+		json_decref(used);
 	json_decref(all);
 	json_decref(own);
 	return schema;

@@ -72,7 +72,7 @@ static json_t *text_types(unsigned also)
 	json_append(&types, json_string("string"));
 	if ((also & (ALSO_NUMBER | ALSO_SHARE)) != 0)
 		json_append(&types, json_string("number"));
-	else if ((also & (ALSO_WHOLE | ALSO_INTEGER)) != 0)
+	else if ((also & ALSO_WHOLE) != 0)
 		json_append(&types, json_string("integer"));
 	if ((also & ALSO_TRUTH) != 0)
 		json_append(&types, json_string("boolean"));

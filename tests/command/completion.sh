@@ -22,7 +22,7 @@ cd "$folder" || exit 1
 touch tide.yaml tide.yml tide.txt tide.rom0.bin tide.rom0.hex 'two words.yaml'
 mkdir images
 
-same 'commands' $'build\ncheck\nlist\nprove' "$(offered '')"
+same 'commands' $'build\ncheck\nlist\nprove\nschema' "$(offered '')"
 same 'a command begun' 'prove' "$(offered pr)"
 same 'plans and folders' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered check '')"
 same 'images too, to be proved' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yaml\ntide.yml\ntwo words.yaml' \
@@ -34,6 +34,7 @@ same 'formats' $'bin\nbin,hex\nhex' "$(offered build --format '')"
 same 'record lengths' $'16\n32' "$(offered build --record '')"
 same 'colours' $'always\nauto\nnever' "$(offered check --color '')"
 same 'catalogues' $'crystals\nparts\nstandards' "$(offered list '')"
+same 'schemas' "$("$SCANLATCH" schema '?' 2>&1 | sed -n 's/.*there are //p' | tr -d ' ' | tr , '\n' | sort)" "$(offered schema '')"
 same 'options before a command' $'--help\n--version' "$(offered -)"
 same 'an option begun' '--unproven' "$(offered build --u)"
 same 'options after arguments' '--strict' "$(offered check tide.yaml --s)"
@@ -42,7 +43,7 @@ same 'nothing that is not there' '' "$(offered check x)"
 cd "$root" || exit 1
 long_options='(^|[^-A-Za-z])--[a-z]+(-[a-z]+)*'
 page=$(sed 's/\\-/-/g; s/\\f.//g' src/command/scanlatch.1)
-for command in check build prove list; do
+for command in check build prove list schema; do
 	options=$("$SCANLATCH" "$command" --help | grep -oE -- "$long_options" | grep -oE -- '--[a-z-]+' | sort -u)
 	same "$command: completion offers the options that its help names" "$options" "$(offered "$command" --)"
 	for option in $options; do

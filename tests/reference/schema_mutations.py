@@ -32,6 +32,7 @@ WHY_UNSEEN = [
     ("bad-expression", r".*wanted no variables but cell and col", "the form of the machine stands elsewhere in the plan"),
     ("bad-expression", r"expression \"[^\"]*[()]", "no pattern pairs parentheses"),
     ("bad-expression", r".*: the number is too large|.*: the expression has more than", "nor counts what the reader can hold"),
+    ("bad-name", r"(name|label) \"[-.\d]+\"", "of a name that YAML takes for a number no pattern sees the characters"),
     ("bank-plan", "", "the plans of a set are other files"),
     ("doubled-name", r"label", "labels are compared with those of other chips"),
     ("doubled-name", r"region .* is changed twice", "regions are compared with those of other changes"),
@@ -48,9 +49,6 @@ class Scalar:
     def __init__(self, text, plain):
         self.text, self.plain = text, plain
 
-    def value(self):
-        return schema_yaml.plain_value(self.text) if self.plain else self.text
-
 
 def tree(node):
     if isinstance(node, yaml.ScalarNode):
@@ -61,12 +59,12 @@ def tree(node):
 
 
 def flow(node):
-    """A tree as YAML in flow style, every text in quotes."""
+    """A tree as YAML in flow style; what YAML takes for a text stands in quotes."""
     if isinstance(node, Scalar):
         is_other = node.plain and not isinstance(schema_yaml.plain_value(node.text), str)
         return node.text if is_other else json.dumps(node.text)
     if isinstance(node, list):
-        return "[" + ", ".join(flow(item) or '""' for item in node) + "]" # nothing cannot stand in a list
+        return "[" + ", ".join(flow(item) or '""' for item in node) + "]"  # nothing cannot stand in a list
     return "{" + ", ".join(f"{flow(key)}: {flow(value)}" for key, value in node["pairs"]) + "}"
 
 
@@ -126,8 +124,8 @@ def mutate(chance, root):
     elif kind == 2:
         mapping.remove(pair)
     elif kind == 3:
-        mapping.append([Scalar(chance.choice(["note", "stage", "line", "frame", "speed", "kind", "cells", "fill", "change", "like"]), False),
-                        Scalar(chance.choice(SCALARS), True)])
+        key = chance.choice(["note", "stage", "line", "frame", "speed", "kind", "cells", "fill", "change", "like"])
+        mapping.append([Scalar(key, False), Scalar(chance.choice(SCALARS), True)])
     elif kind == 4 and isinstance(pair[1], Scalar):
         pair[1] = Scalar(misspelt(chance, pair[1].text), pair[1].plain)
     else:

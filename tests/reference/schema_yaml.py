@@ -1,7 +1,7 @@
 """Values of YAML files by the core schema of YAML 1.2.2 (section 10.3.2), as editors' YAML support hands them to a validator.
 
-PyYAML scans and parses; which plain scalars are numbers, truth values and nulls is decided by the core schema's own
-expressions, as PyYAML's are those of YAML 1.1.
+PyYAML scans and parses, by YAML 1.1, which unlike 1.2 lets a bare - stand in a list in brackets; which plain scalars are numbers,
+truth values and nulls is decided by the core schema's own expressions.
 """
 import re
 
