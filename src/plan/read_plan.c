@@ -51,10 +51,11 @@ static const struct key plan_keys[PLAN_KEYS] = {
 	[PLAN_FRAME] = {"frame", KEY_REQUIRED, &frame_shape, "Blocks of lines, in order; the sequencer loops over them for ever"},
 };
 
+// A board is everything but lines and frame; those of a plan that is given in its place are passed over.
 static const struct key board_keys[PLAN_KEYS] = {
 	BOARD_KEYS,
-	[PLAN_LINES] = {"lines", KEY_UNUSED, NULL, NULL},
-	[PLAN_FRAME] = {"frame", KEY_UNUSED, NULL, NULL},
+	[PLAN_LINES] = {"lines", KEY_OPTIONAL, &lines_shape, "Of a plan in a board's place; passed over"},
+	[PLAN_FRAME] = {"frame", KEY_OPTIONAL, &frame_shape, "Of a plan in a board's place; passed over"},
 };
 
 const struct shape plan_shape = {

@@ -34,8 +34,6 @@ def main(files):
         missing -= keys_of(value)
         for fault in languages.faults(value):
             print(f"{file}: {fault}"[:400])
-        if board.is_valid(value):
-            print(f"{file}: taken for a board")
         if "scanlatch" in value:
             rest = {key: part for key, part in value.items() if key not in ("lines", "frame")}
             for fault in board.iter_errors(rest):
