@@ -39,6 +39,7 @@ int command_check(int argument_count, char **arguments);
 int command_fit(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
+int command_schema(int argument_count, char **arguments);
 
 // Long options without a short one: values above any character.
 enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING };

@@ -11,12 +11,12 @@ const struct command commands[] = {
 	{"prove", "prove images that are there against their plan or set", command_prove},
 	{"fit", "search line layouts that suit a standard, and write one as a plan", command_fit},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
+	{"schema", "print a JSON Schema of plans, sets, boards or reports", command_schema},
 };
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
-static const char *const later_commands[] = {"diff",     "draw",  "sheet",  "lift",
-                                             "readback", "probe", "export", "schema"};
+static const char *const later_commands[] = {"diff", "draw", "sheet", "lift", "readback", "probe", "export"};
 
 static void print_help(FILE *out)
 {
