@@ -207,8 +207,11 @@ static void make_limits(struct reader *reader, const struct node *place, const s
 			limit->grade = (enum limit_grade)grade;
 			if (make_limit(reader, mode, source, &rules->shares[limit->item][grade], limit))
 				continue;
-			diagnose(reader->diagnostics, RULE_BAD_QUANTITY, place->place, "%s cannot be kept exactly",
-			         limit_item_facts(limit->item)->name);
+			if (limit->source == NULL)
+				diagnose(reader->diagnostics, RULE_OUT_OF_MEMORY, place->place, "memory is out");
+			else
+				diagnose(reader->diagnostics, RULE_BAD_QUANTITY, place->place, "%s cannot be kept exactly",
+				         limit_item_facts(limit->item)->name);
 			return;
 		}
 }

@@ -36,6 +36,7 @@ extern const size_t command_count;
 
 int command_build(int argument_count, char **arguments);
 int command_check(int argument_count, char **arguments);
+int command_fit(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
 int command_schema(int argument_count, char **arguments);

@@ -1,24 +1,26 @@
 // The lines without burst, by the standard's numbers, and whether they are those of the standard.
+#include <string.h>
+
 #include "base/arena.h"
 #include "measure/tally.h"
 
-// Places at which fields begin, around the trace: -1 is the last of the lap before.
+// Places at which fields begin, around the trace: -1 is the last of the lap before, and so on in both directions.
 struct zeros {
 	const int64_t *list;
 	int64_t count;
 	int64_t total;
 };
 
-static int64_t zero_at(const struct zeros *zeros, int64_t index)
-{
-	if (index < 0)
-		return zeros->list[zeros->count + index] - zeros->total;
-	return index < zeros->count ? zeros->list[index] : zeros->list[index - zeros->count] + zeros->total;
-}
-
 static int64_t wrapped(const struct zeros *zeros, int64_t index)
 {
-	return index < 0 ? index + zeros->count : index >= zeros->count ? index - zeros->count : index;
+	const int64_t rest = index % zeros->count;
+	return rest < 0 ? rest + zeros->count : rest;
+}
+
+static int64_t zero_at(const struct zeros *zeros, int64_t index)
+{
+	const int64_t field = wrapped(zeros, index);
+	return zeros->list[field] + (index - field) / zeros->count * zeros->total;
 }
 
 struct numbering {
@@ -89,33 +91,55 @@ static void join_ends(struct measurement *result, struct burstless *list, bool j
 	result->burstless_count--;
 }
 
-static bool runs_match(const struct measurement *result, const struct standard *standard, uint32_t turn)
+static unsigned pause_fields(const struct standard *standard)
 {
-	size_t pause_fields = 0;
+	unsigned fields = 0;
 	for (size_t index = 0; index < standard->pause_count; index++)
-		if (standard->pauses[index].field > pause_fields)
-			pause_fields = standard->pauses[index].field;
-	size_t wanted = 0;
-	for (uint32_t field = 0; field < result->field_count; field++)
-		for (size_t index = 0; index < standard->pause_count; index++) {
-			const struct burst_pause *pause = &standard->pauses[index];
-			if (pause->field != (field + turn) % pause_fields + 1)
-				continue;
-			wanted++;
-			bool found = false;
-			for (uint32_t run = 0; run < result->burstless_count && !found; run++)
-				found = result->burstless[run].field == field && result->burstless[run].first_line == pause->first_line &&
-				        result->burstless[run].last_line == pause->last_line;
-			if (!found)
-				return false;
-		}
-	return wanted == result->burstless_count;
+		if (standard->pauses[index].field > fields)
+			fields = standard->pauses[index].field;
+	return fields;
+}
+
+static size_t pauses_of(const struct standard *standard, uint64_t field)
+{
+	size_t count = 0;
+	for (size_t index = 0; index < standard->pause_count; index++)
+		count += standard->pauses[index].field == field;
+	return count;
+}
+
+static bool is_pause(const struct standard *standard, uint64_t field, const struct burstless *run)
+{
+	for (size_t index = 0; index < standard->pause_count; index++) {
+		const struct burst_pause *pause = &standard->pauses[index];
+		if (pause->field == field && pause->first_line == run->first_line && pause->last_line == run->last_line)
+			return true;
+	}
+	return false;
+}
+
+// Whether the frame, as it repeats, has the standard's sequence if it begins with its field turn + 1: every run is a pause of its field,
+// and there are as many runs as pauses, in each lap until both come round. Runs differ, and so do pauses.
+static bool runs_match(const struct measurement *result, const struct standard *standard, uint64_t turn)
+{
+	const unsigned sequence = pause_fields(standard);
+	bool match = true;
+	for (uint64_t lap = 0; lap < sequence && match; lap++) {
+		const uint64_t first = turn + lap * result->field_count;
+		size_t wanted = 0;
+		for (uint32_t field = 0; field < result->field_count; field++)
+			wanted += pauses_of(standard, (first + field) % sequence + 1);
+		match = wanted == result->burstless_count;
+		for (uint32_t run = 0; run < result->burstless_count && match; run++)
+			match = is_pause(standard, (first + result->burstless[run].field) % sequence + 1, &result->burstless[run]);
+	}
+	return match;
 }
 
 // A frame may begin with any field of the standard's sequence.
 static bool pauses_match(const struct measurement *result, const struct standard *standard)
 {
-	for (uint32_t turn = 0; turn < standard->pause_count; turn++)
+	for (uint32_t turn = 0; turn < pause_fields(standard); turn++)
 		if (runs_match(result, standard, turn))
 			return true;
 	return false;
@@ -130,10 +154,19 @@ static void tally_fields(struct instrument *instrument, const struct measured_fi
 	}
 }
 
+// The runs, with no more room than they need. NULL when memory is out.
+static const struct burstless *kept_runs(const struct instrument *instrument, const struct burstless *list, uint32_t count)
+{
+	struct burstless *kept = arena_array(instrument->results, count, sizeof *kept);
+	if (kept != NULL && count > 0)
+		memcpy(kept, list, count * sizeof *kept);
+	return kept;
+}
+
 bool measure_burstless(struct instrument *instrument, struct measurement *result)
 {
 	const struct raster *raster = &instrument->raster;
-	struct measured_field *fields = arena_array(instrument->arena, raster->field_count, sizeof *fields);
+	struct measured_field *fields = arena_array(instrument->results, raster->field_count, sizeof *fields);
 	struct burstless *list = arena_array(instrument->arena, raster->line_count, sizeof *list);
 	struct numbering numbering;
 	if (fields == NULL || list == NULL || !numbering_start(instrument, &numbering))
@@ -155,7 +188,9 @@ bool measure_burstless(struct instrument *instrument, struct measurement *result
 	result->fields = fields;
 	result->field_count = raster->field_count;
 	result->numbered = numbering.first_number > 0;
-	result->burstless = list;
+	result->burstless = kept_runs(instrument, list, result->burstless_count);
+	if (result->burstless == NULL)
+		return false;
 	result->pauses_kept = result->numbered && pauses_match(result, instrument->standard);
 	tally_fields(instrument, fields);
 	return true;
