@@ -221,6 +221,52 @@ static void put_burstless(struct text *out, const struct measurement *measuremen
 	text_release(&words);
 }
 
+// How far the picture's middle is from the standard's, at its farther end. False if it is not known.
+static bool find_offset(const struct proofs *proofs, enum limit_item item, struct fraction *offset)
+{
+	const struct measured *measured = &proofs->limits.measurement->items[item];
+	const struct limit *limit = limit_at(proofs, item, plan_of_proofs(proofs)->grade);
+	struct fraction low, high, both;
+	if (limit == NULL || !limit->has_nominal || !measured->known || !fraction_subtract(measured->values.low, limit->nominal, &low) ||
+	    !fraction_subtract(measured->values.high, limit->nominal, &high) || !fraction_add(low, high, &both))
+		return false;
+	*offset = both.numerator < 0 ? low : high;
+	return true;
+}
+
+static void put_offset(struct text *words, enum limit_item item, struct fraction offset, const char *less, const char *more)
+{
+	const bool is_less = offset.numerator < 0;
+	if (offset.numerator == 0) {
+		text_printf(words, "neither %s nor %s", less, more);
+		return;
+	}
+	if (is_less)
+		offset.numerator = -offset.numerator;
+	put_value_unit(words, item, offset);
+	text_printf(words, " %s", is_less ? less : more);
+}
+
+static void put_centring(struct text *out, const struct proofs *proofs)
+{
+	struct fraction across, down;
+	struct text words = {0};
+	if (!find_offset(proofs, ITEM_HORIZONTAL_CENTRE, &across) || !find_offset(proofs, ITEM_VERTICAL_CENTRE, &down))
+		return;
+	if (across.numerator == 0 && down.numerator == 0) {
+		text_put(&words, "the picture's middle is where the standard has it");
+	} else {
+		text_put(&words, "the picture's middle, from the standard's: ");
+		put_offset(&words, ITEM_HORIZONTAL_CENTRE, across, "to the left", "to the right");
+		text_put(&words, ", ");
+		put_offset(&words, ITEM_VERTICAL_CENTRE, down, "up", "down");
+	}
+	text_put_wrapped(out, text_string(&words), 0, 2);
+	text_put(out, "\n");
+	out->failed = out->failed || words.failed;
+	text_release(&words);
+}
+
 void view_limits(struct text *out, const struct proofs *proofs)
 {
 	const enum limit_grade grade = proofs->limits.measurement == NULL ? GRADE_MONITOR : plan_of_proofs(proofs)->grade;
@@ -242,6 +288,7 @@ void view_limits(struct text *out, const struct proofs *proofs)
 	text_printf(out, ", grade %s%s\n", limit_grade_name(grade),
 	            plan_of_proofs(proofs)->clock.has_accuracy ? "; margins with the clock's accuracy" : "");
 	view_columns(out, &table, TERMINAL_CHARACTERS);
+	put_centring(out, proofs);
 	put_all_unmeasured(out, proofs);
 	put_burstless(out, proofs->limits.measurement);
 }

@@ -219,7 +219,7 @@ static void lines_without_a_pulse_of_their_own(void **state)
 	erase(drawn);
 }
 
-// A broad pulse in the middle: its line is from 0H to 0H, but not a normal one. And a line whose pulse comes a cell late begins with it.
+// A broad pulse in the middle changes nothing for its line, which is from 0H to 0H. And a line whose pulse comes a cell late begins with it.
 static void lines_in_a_vertical_interval(void **state)
 {
 	(void)state;
