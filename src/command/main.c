@@ -9,13 +9,13 @@ const struct command commands[] = {
 	{"check", "read plans or sets, lay out their lines and report, without images", command_check},
 	{"build", "make the images of plans or sets, prove them and write them", command_build},
 	{"prove", "prove images that are there against their plan or set", command_prove},
+	{"draw", "draw a line, the frame, the tables or the colour phase of a plan", command_draw},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
 };
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
-static const char *const later_commands[] = {"diff",     "draw",  "sheet",  "fit", "lift",
-                                             "readback", "probe", "export", "schema"};
+static const char *const later_commands[] = {"diff", "sheet", "fit", "lift", "readback", "probe", "export", "schema"};
 
 static void print_help(FILE *out)
 {
