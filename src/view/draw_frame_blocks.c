@@ -169,7 +169,7 @@ static void draw_block(const struct frame_drawing *drawing, const struct panel *
 	svg_whole(svg, "data-rows", block->rows);
 	svg_attribute(svg, "data-type", type);
 	draw_leader(drawing, panel, block, label);
-	svg_named(svg, x, label + PX(5), FRAME_SIDE - PX(50), type, text_string(&words));
+	svg_named(svg, x, label + PX(5), ANCHOR_START, FRAME_SIDE - PX(50), type, text_string(&words));
 	svg_close(svg);
 	svg_release(svg, &words);
 }

@@ -13,11 +13,11 @@
 #define HEAD_HEIGHT PX(76)
 #define CALLOUT_HEIGHT PX(21)
 #define MOST_CALLOUT_ROWS 9u
-#define MOST_REGIONS 400u
 #define STRIP_HEIGHT PX(44)
 #define LIMIT_HEIGHT PX(30)
 #define FOOT_LINE PX(20)
 #define GAP PX(10)
+#define LINE_RULERS_HEIGHT PX(84)
 
 // A region's name with its lengths, and whether it fits into its box.
 static void put_region_words(const struct line_drawing *drawing, struct text *words, size_t index)
@@ -57,77 +57,98 @@ static bool fits_in_box(const struct line_drawing *drawing, size_t index)
 	return (lengths > name ? lengths : name) + PX(8) <= region_width(drawing, index);
 }
 
-// Rows of callouts above the strip, the first on top. A leader goes straight down from its name's beginning, so nothing in the rows
-// below may reach so far.
-struct callouts {
-	int64_t ends[MOST_CALLOUT_ROWS]; // of what the rows hold so far
+// Rows of callouts above the strip, the first on top. A leader goes straight down from its name: from its beginning, or at the picture's
+// right side, where a name stands before its region, from its end. No leader may cross a name.
+struct callout_room {
+	int64_t ends[MOST_CALLOUT_ROWS];    // of names with the leader at their beginning, so far
+	int64_t leaders[MOST_CALLOUT_ROWS]; // the last of them
+	int64_t starts[MOST_CALLOUT_ROWS];  // of names with the leader at their end, the leftmost so far
 };
 
-// The row for a name that begins at x; MOST_CALLOUT_ROWS if there is none.
-static unsigned callout_row(struct callouts *callouts, int64_t x, int64_t width)
+// The highest row that is free from x on, so that nothing below reaches there.
+static unsigned row_from_left(struct callout_room *room, const struct callout *callout)
 {
 	unsigned row = MOST_CALLOUT_ROWS;
-	while (row > 0 && callouts->ends[row - 1] <= x)
+	while (row > 0 && room->ends[row - 1] <= callout->x)
 		row--;
-	if (row < MOST_CALLOUT_ROWS)
-		callouts->ends[row] = x + width;
+	if (row < MOST_CALLOUT_ROWS) {
+		room->ends[row] = callout->x + callout->width;
+		room->leaders[row] = callout->leader;
+	}
 	return row;
 }
 
-// A name that would leave the picture stands before its leader instead.
-static int64_t callout_x(const struct line_drawing *drawing, size_t index, int64_t width)
+// The same seen from the right; leaders from the left may not be in the way.
+static unsigned row_from_right(struct callout_room *room, const struct callout *callout)
 {
-	const int64_t x = line_x(drawing, run_of_region(drawing, index).tick) + PX(2), most = LINE_LEFT + drawing->width + LINE_RIGHT - width;
-	return x < most ? x : most;
+	unsigned row = MOST_CALLOUT_ROWS;
+	while (row > 0 && room->starts[row - 1] >= callout->leader)
+		row--;
+	for (; row < MOST_CALLOUT_ROWS; row++) {
+		bool free = room->ends[row] <= callout->x;
+		for (unsigned above = 0; above < row; above++)
+			free = free && room->leaders[above] <= callout->x;
+		if (free)
+			break;
+	}
+	if (row < MOST_CALLOUT_ROWS)
+		room->starts[row] = callout->x;
+	return row;
 }
 
-typedef void region_visit(struct line_drawing *drawing, size_t index, unsigned row, int64_t x, int64_t y);
-
-// Goes through the regions that are drawn; of those with a callout the row.
-static void visit_callouts(struct line_drawing *drawing, int64_t y, region_visit *visit)
+// Gives a region its row, or counts it as one that has no name.
+static void place_callout(struct line_drawing *drawing, struct callout_room *room, struct callout *callout)
 {
-	struct callouts callouts = {{0}};
-	size_t count = drawing->shape.type->region_count;
+	callout->row = callout->before ? row_from_right(room, callout) : row_from_left(room, callout);
+	if (callout->row == MOST_CALLOUT_ROWS)
+		drawing->unnamed++;
+	else if (callout->row + 1 > drawing->callout_rows)
+		drawing->callout_rows = callout->row + 1;
+}
+
+static void list_callouts(struct line_drawing *drawing)
+{
+	const size_t count = drawing->shape.type->region_count;
+	const int64_t end = LINE_LEFT + drawing->width + LINE_RIGHT;
 	drawing->unnamed = count > MOST_REGIONS ? count - MOST_REGIONS : 0;
-	if (count > MOST_REGIONS)
-		count = MOST_REGIONS;
-	for (size_t index = 0; index < count; index++) {
+	for (size_t index = 0; index < count && index < MOST_REGIONS; index++) {
 		if (fits_in_box(drawing, index))
 			continue;
-		const int64_t width = callout_width(drawing, index), x = callout_x(drawing, index, width);
-		const unsigned row = callout_row(&callouts, x, width);
-		if (row == MOST_CALLOUT_ROWS)
-			drawing->unnamed++;
-		else
-			visit(drawing, index, row, x, y);
+		struct callout *callout = &drawing->callouts[drawing->callout_count++];
+		const int64_t leader = line_x(drawing, run_of_region(drawing, index).tick) + PX(1), width = callout_width(drawing, index);
+		const bool before = leader + width > end;
+		*callout = (struct callout){.region = index, .leader = leader, .width = width, .before = before, .x = before ? leader - width : leader};
 	}
 }
 
-static void note_row(struct line_drawing *drawing, size_t index, unsigned row, int64_t x, int64_t y)
+static void place_callouts(struct line_drawing *drawing)
 {
-	(void)index;
-	(void)x;
-	(void)y;
-	if (row + 1 > drawing->callout_rows)
-		drawing->callout_rows = row + 1;
+	struct callout_room room = {{0}, {0}, {0}};
+	for (unsigned row = 0; row < MOST_CALLOUT_ROWS; row++)
+		room.starts[row] = INT64_MAX;
+	list_callouts(drawing);
+	for (size_t index = 0; index < drawing->callout_count; index++)
+		if (!drawing->callouts[index].before)
+			place_callout(drawing, &room, &drawing->callouts[index]);
+	for (size_t index = drawing->callout_count; index-- > 0;)
+		if (drawing->callouts[index].before)
+			place_callout(drawing, &room, &drawing->callouts[index]);
 }
 
-int64_t line_regions_height(struct line_drawing *drawing)
+static int64_t regions_height(const struct line_drawing *drawing)
 {
-	drawing->callout_rows = 0;
-	visit_callouts(drawing, 0, note_row);
 	return (int64_t)drawing->callout_rows * CALLOUT_HEIGHT + STRIP_HEIGHT + GAP + (drawing->unnamed > 0 ? FOOT_LINE : 0);
 }
 
-static void draw_callout(struct line_drawing *drawing, size_t index, unsigned row, int64_t x, int64_t y)
+static void draw_callout(const struct line_drawing *drawing, const struct callout *callout, int64_t y)
 {
 	struct svg *svg = drawing->svg;
 	struct text words = {0};
-	const int64_t base = y + (int64_t)row * CALLOUT_HEIGHT + PX(15), strip = y + (int64_t)drawing->callout_rows * CALLOUT_HEIGHT;
-	const int64_t leader = line_x(drawing, run_of_region(drawing, index).tick) + PX(1);
-	svg_line(svg, "hair", leader, base - PX(11), leader, strip);
-	put_region_words(drawing, &words, index);
-	svg_named(svg, x + PX(4), base, drawing->width, drawing->shape.type->regions[index].name, text_string(&words));
+	const int64_t base = y + (int64_t)callout->row * CALLOUT_HEIGHT + PX(15), strip = y + (int64_t)drawing->callout_rows * CALLOUT_HEIGHT;
+	svg_line(svg, "hair", callout->leader, base - PX(11), callout->leader, strip);
+	put_region_words(drawing, &words, callout->region);
+	svg_named(svg, callout->before ? callout->leader - PX(5) : callout->leader + PX(5), base,
+	          callout->before ? ANCHOR_END : ANCHOR_START, callout->width, drawing->shape.type->regions[callout->region].name, text_string(&words));
 	svg_release(svg, &words);
 }
 
@@ -159,7 +180,7 @@ static void draw_region_box(struct line_drawing *drawing, size_t index, int64_t 
 	svg_release(svg, &words);
 }
 
-void draw_line_regions(struct line_drawing *drawing, int64_t y)
+static void draw_regions(struct line_drawing *drawing, int64_t y)
 {
 	const int64_t strip = y + (int64_t)drawing->callout_rows * CALLOUT_HEIGHT;
 	struct svg *svg = drawing->svg;
@@ -167,7 +188,9 @@ void draw_line_regions(struct line_drawing *drawing, int64_t y)
 	svg_text(svg, "name", PX(16), strip + PX(27), ANCHOR_START, "regions");
 	for (size_t index = 0; index < drawing->shape.type->region_count && index < MOST_REGIONS; index++)
 		draw_region_box(drawing, index, strip);
-	visit_callouts(drawing, y, draw_callout);
+	for (size_t index = 0; index < drawing->callout_count; index++)
+		if (drawing->callouts[index].row < MOST_CALLOUT_ROWS)
+			draw_callout(drawing, &drawing->callouts[index], y);
 	if (drawing->unnamed > 0) {
 		struct text words = {0};
 		text_put_count(&words, drawing->unnamed, "region is", "regions are");
@@ -243,7 +266,7 @@ static void draw_time_ruler(struct line_drawing *drawing, int64_t y)
 	svg_release(drawing->svg, &words);
 }
 
-void draw_line_rulers(struct line_drawing *drawing, int64_t y)
+static void draw_rulers(struct line_drawing *drawing, int64_t y)
 {
 	svg_group(drawing->svg, "ruler");
 	draw_cell_ruler(drawing, y + PX(6));
@@ -253,7 +276,7 @@ void draw_line_rulers(struct line_drawing *drawing, int64_t y)
 	svg_close(drawing->svg);
 }
 
-int64_t line_limits_height(const struct line_drawing *drawing)
+static int64_t limits_height(const struct line_drawing *drawing)
 {
 	return drawing->limit_count > 0 ? (int64_t)drawing->limit_count * LIMIT_HEIGHT + PX(40) : 0;
 }
@@ -321,6 +344,23 @@ static void put_exact(struct svg *svg, const char *name, struct fraction value)
 	svg_release(svg, &words);
 }
 
+// Behind what is drawn, or before it, or on it: where there is room.
+static void draw_limit_words(const struct line_drawing *drawing, const struct line_limit *limit, int64_t left, int64_t right, int64_t y,
+                             const char *words)
+{
+	const int64_t width = svg_words_width(words, 13) + PX(8);
+	const char *class = limit->kept ? "small" : "small missed";
+	struct svg *svg = drawing->svg;
+	if (right + width <= LINE_LEFT + drawing->width + LINE_RIGHT) {
+		svg_text(svg, class, right, y + PX(19), ANCHOR_START, words);
+	} else if (left - width >= LINE_LEFT) {
+		svg_text(svg, class, left, y + PX(19), ANCHOR_END, words);
+	} else {
+		svg_box(svg, "plate", (left + right - width) / 2, y + PX(5), width, PX(20));
+		svg_text(svg, class, (left + right) / 2, y + PX(19), ANCHOR_MIDDLE, words);
+	}
+}
+
 static void draw_limit(const struct line_drawing *drawing, const struct line_limit *limit, int64_t y)
 {
 	struct svg *svg = drawing->svg;
@@ -344,14 +384,12 @@ static void draw_limit(const struct line_drawing *drawing, const struct line_lim
 		left = from;
 	if (right < to)
 		right = to;
-	const bool before = right + svg_words_width(text_string(&words), 13) > LINE_LEFT + drawing->width + LINE_RIGHT - PX(24);
-	svg_text(svg, limit->kept ? "small" : "small missed", before ? left - PX(10) : right + PX(10), y + PX(19),
-	         before ? ANCHOR_END : ANCHOR_START, text_string(&words));
+	draw_limit_words(drawing, limit, left - PX(10), right + PX(10), y, text_string(&words));
 	svg_close(svg);
 	svg_release(svg, &words);
 }
 
-void draw_line_limits(struct line_drawing *drawing, int64_t y)
+static void draw_limits(struct line_drawing *drawing, int64_t y)
 {
 	const struct plan *plan = drawing->shape.plan;
 	struct text words = {0};
@@ -412,28 +450,28 @@ static void draw_foot(const struct line_drawing *drawing, int64_t y)
 	svg_release(svg, &words);
 }
 
-static void draw_parts(struct line_drawing *drawing, int64_t regions_height, const char *title)
+static void draw_parts(struct line_drawing *drawing, const char *title)
 {
 	struct svg *svg = drawing->svg;
 	const struct plan *plan = drawing->shape.plan;
 	const int64_t room = LINE_LEFT + drawing->width + LINE_RIGHT - PX(32);
 	svg_fitted(svg, "title", PX(16), PX(34), ANCHOR_START, room, 21, title);
 	svg_fitted(svg, "note", PX(16), PX(58), ANCHOR_START, room, 15, plan->note);
-	int64_t y = HEAD_HEIGHT + regions_height;
+	int64_t y = HEAD_HEIGHT + regions_height(drawing);
 	const int64_t traces = y, composite = traces + line_traces_height(drawing), rulers = composite + line_composite_height(drawing);
 	svg_group(svg, "plot");
 	svg_whole(svg, "data-ticks", drawing->shape.ticks);
 	svg_length(svg, "data-left", LINE_LEFT);
 	svg_length(svg, "data-width", drawing->width);
 	draw_guides(drawing, y - GAP, rulers + PX(6));
-	draw_line_regions(drawing, HEAD_HEIGHT);
+	draw_regions(drawing, HEAD_HEIGHT);
 	draw_line_traces(drawing, traces);
 	draw_line_composite(drawing, composite);
-	draw_line_rulers(drawing, rulers);
+	draw_rulers(drawing, rulers);
 	y = rulers + LINE_RULERS_HEIGHT;
-	draw_line_limits(drawing, y);
+	draw_limits(drawing, y);
 	svg_close(svg);
-	draw_foot(drawing, y + line_limits_height(drawing) + GAP);
+	draw_foot(drawing, y + limits_height(drawing) + GAP);
 }
 
 static uint32_t runs_of_a_trace(const struct plan *plan)
@@ -449,6 +487,10 @@ static bool prepare(struct line_drawing *drawing, const struct timeline *timelin
 	drawing->has_composite = timeline->plan->role_signal[ROLE_COMPOSITE_SYNC] >= 0;
 	drawing->width = plot_width(drawing->shape.ticks);
 	drawing->most_runs = runs_of_a_trace(timeline->plan);
+	drawing->callouts = arena_array(arena, MOST_REGIONS, sizeof *drawing->callouts);
+	if (drawing->callouts == NULL)
+		return false;
+	place_callouts(drawing);
 	return true;
 }
 
@@ -460,13 +502,12 @@ bool view_line_svg(struct text *out, const struct picture *picture, const struct
 	const bool made = arena != NULL && prepare(&drawing, timeline, line, arena);
 	if (made) {
 		struct text title = {0}, description = {0};
-		const int64_t regions = line_regions_height(&drawing);
-		const int64_t height = HEAD_HEIGHT + regions + line_traces_height(&drawing) + line_composite_height(&drawing) + LINE_RULERS_HEIGHT +
-		                       line_limits_height(&drawing) + GAP + (drawing.has_composite ? 2 : 1) * FOOT_LINE + PX(12);
+		const int64_t height = HEAD_HEIGHT + regions_height(&drawing) + line_traces_height(&drawing) + line_composite_height(&drawing) + LINE_RULERS_HEIGHT +
+		                       limits_height(&drawing) + GAP + (drawing.has_composite ? 2 : 1) * FOOT_LINE + PX(12);
 		put_heading(&drawing.shape, &title);
 		put_description(&drawing, &description);
 		svg_begin(&svg, out, picture, LINE_LEFT + drawing.width + LINE_RIGHT, height, text_string(&title), text_string(&description));
-		draw_parts(&drawing, regions, text_string(&title));
+		draw_parts(&drawing, text_string(&title));
 		svg_end(&svg);
 		svg_release(&svg, &title);
 		svg_release(&svg, &description);

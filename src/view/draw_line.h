@@ -10,7 +10,16 @@
 #define LINE_PLOT PX(900)    // at most
 #define LINE_RIGHT PX(104)
 #define MOST_RUNS 4000u      // drawn of all traces together
+#define MOST_REGIONS 400u
 #define MOST_STRETCHED 100u  // runs of stretched cells
+
+// The name of a region that is too narrow for it, above the strip of regions.
+struct callout {
+	size_t region;
+	unsigned row;
+	bool before;                 // it ends at its leader, and does not begin there
+	int64_t leader, x, width;
+};
 
 struct line_drawing {
 	struct svg *svg;
@@ -20,6 +29,8 @@ struct line_drawing {
 	bool has_composite;          // the plan makes composite sync
 	int64_t width;               // of the plot: a whole number of thousandths a tick, unless there are too many ticks
 	uint32_t most_runs;          // of a trace
+	struct callout *callouts;    // [callout_count], at most MOST_REGIONS
+	size_t callout_count;
 	uint32_t callout_rows;
 	size_t unnamed;              // regions for whose names there is no room
 };
@@ -30,17 +41,11 @@ static inline int64_t line_x(const struct line_drawing *drawing, int64_t tick)
 	return LINE_LEFT + svg_share(drawing->width, tick, drawing->shape.ticks);
 }
 
-// Heights of the parts, and the parts themselves at y. None fails otherwise than by memory.
-int64_t line_regions_height(struct line_drawing *drawing);
-void draw_line_regions(struct line_drawing *drawing, int64_t y);
+// Traces and the composite level: the heights they take, and how they are drawn from a height on. Cannot fail but for memory.
 int64_t line_traces_height(const struct line_drawing *drawing);
 void draw_line_traces(struct line_drawing *drawing, int64_t y);
 int64_t line_composite_height(const struct line_drawing *drawing);
 void draw_line_composite(struct line_drawing *drawing, int64_t y);
-#define LINE_RULERS_HEIGHT PX(84)
-void draw_line_rulers(struct line_drawing *drawing, int64_t y);
-int64_t line_limits_height(const struct line_drawing *drawing);
-void draw_line_limits(struct line_drawing *drawing, int64_t y);
 
 // Puts a run's attributes, and closes nothing.
 void line_run_attributes(const struct line_drawing *drawing, const struct shape_run *run);

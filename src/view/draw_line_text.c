@@ -428,6 +428,8 @@ static bool lay_columns(struct line_chart *chart, struct arena *arena)
 		for (uint32_t count = step == 0 ? columns_of_cell(shape, cell) : 1; count > 0; count--)
 			chart->cell_of_column[chart->width++] = cell;
 	chart->cell_of_column[chart->width] = shape->cells;
+	const uint32_t panels = (chart->width + chart->panel - 1) / chart->panel;
+	chart->panel = (chart->width + panels - 1) / panels; // all about as wide
 	return true;
 }
 

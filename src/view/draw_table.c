@@ -257,7 +257,7 @@ static void draw_use(const struct table_drawing *drawing, const struct address_u
 		text_put(&words, " to ");
 		text_put_hex(&words, use->last[kind], use->bits);
 	}
-	svg_named(svg, x + PX(62), y + PX(14), LIST_WIDTH - PX(70), use_name(drawing, use, kind), text_string(&words));
+	svg_named(svg, x + PX(62), y + PX(14), ANCHOR_START, LIST_WIDTH - PX(70), use_name(drawing, use, kind), text_string(&words));
 	svg_close(svg);
 	svg_release(svg, &words);
 }

@@ -166,12 +166,13 @@ uint32_t picture_common_line(const struct timeline *timeline)
 {
 	struct arena *arena = arena_create();
 	uint32_t *uses = arena != NULL ? arena_array(arena, timeline->plan->line_count, sizeof *uses) : NULL;
-	size_t common = timeline->lines[0].type;
+	size_t common = 0;
 	for (uint32_t line = 0; uses != NULL && line < timeline->line_count; line++)
 		uses[timeline->lines[line].type]++;
 	for (size_t type = 0; uses != NULL && type < timeline->plan->line_count; type++)
 		if (uses[type] > uses[common])
 			common = type;
 	arena_destroy(arena);
-	return picture_line_of_type(timeline, common);
+	const uint32_t line = picture_line_of_type(timeline, common);
+	return line != UINT32_MAX ? line : 0;
 }

@@ -162,7 +162,7 @@ static int64_t character_width(unsigned char first, unsigned size)
 {
 	if (first >= 0xE1u)
 		return (int64_t)size * 1050;
-	return (int64_t)size * (first >= 'A' && first <= 'Z' ? 680 : 570);
+	return (int64_t)size * (first >= 'A' && first <= 'Z' ? 680 : 550);
 }
 
 static size_t character_bytes(const char *bytes)
@@ -209,8 +209,9 @@ void svg_fitted(struct svg *svg, const char *class, int64_t x, int64_t y, enum s
 	text_put_bytes(&cut, words, bytes_within(words, size, width - (int64_t)size * 1000, &fits));
 	text_put(&cut, "\xE2\x80\xA6");
 	open_text(svg, class, x, y, anchor);
-	svg_title(svg, words);
 	svg->in_words = true; // a break of the line would be seen as a space
+	svg_title(svg, words);
+	svg->in_words = true;
 	svg_words(svg, text_string(&cut));
 	svg_close(svg);
 	svg_release(svg, &cut);
@@ -228,7 +229,7 @@ static void put_span(struct svg *svg, const char *class, const char *gap, const 
 	svg->in_words = true;
 }
 
-void svg_named(struct svg *svg, int64_t x, int64_t y, int64_t width, const char *name, const char *words)
+void svg_named(struct svg *svg, int64_t x, int64_t y, enum svg_anchor anchor, int64_t width, const char *name, const char *words)
 {
 	bool fits;
 	const int64_t room = width - svg_words_width(words, 13) - PX(8);
@@ -236,9 +237,7 @@ void svg_named(struct svg *svg, int64_t x, int64_t y, int64_t width, const char 
 	const size_t length = bytes_within(name, 16, room, &fits);
 	text_put_bytes(&cut, name, fits ? length : bytes_within(name, 16, room - PX(16), &fits));
 	text_put(&cut, name[cut.length] == '\0' ? "" : "\xE2\x80\xA6");
-	svg_open(svg, "text");
-	svg_length(svg, "x", x);
-	svg_length(svg, "y", y);
+	open_text(svg, "pair", x, y, anchor);
 	put_span(svg, "name", NULL, text_string(&cut));
 	put_span(svg, "small", "8", words);
 	svg_close(svg);

@@ -72,7 +72,7 @@ void svg_text(struct svg *svg, const char *class, int64_t x, int64_t y, enum svg
 void svg_fitted(struct svg *svg, const char *class, int64_t x, int64_t y, enum svg_anchor anchor, int64_t width, unsigned size,
                 const char *words);
 // A name and, smaller, words behind it; the name is cut where both would be wider than `width`.
-void svg_named(struct svg *svg, int64_t x, int64_t y, int64_t width, const char *name, const char *words);
+void svg_named(struct svg *svg, int64_t x, int64_t y, enum svg_anchor anchor, int64_t width, const char *name, const char *words);
 // <title>: what a reader's pointer shows over the element that was opened.
 void svg_title(struct svg *svg, const char *words);
 
