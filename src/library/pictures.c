@@ -83,7 +83,10 @@ static bool find_line(const scanlatch_plan *plan, const struct timeline *timelin
 	}
 	if (number >= timeline->line_count) {
 		diagnose(messages->diagnostics, RULE_UNKNOWN_LINE, whole_of(plan), "there is no line %" PRIu64, number);
-		diagnose_hint(messages->diagnostics, "the frame's lines are 0 to %" PRIu32, timeline->line_count - 1);
+		if (timeline->line_count == 1)
+			diagnose_hint(messages->diagnostics, "the frame has line 0 alone");
+		else
+			diagnose_hint(messages->diagnostics, "the frame's lines are 0 to %" PRIu32, timeline->line_count - 1);
 		return false;
 	}
 	*line = (uint32_t)number;

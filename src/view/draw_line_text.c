@@ -14,6 +14,7 @@
 #define LEAST_COLUMNS 20u
 #define MOST_LABEL 16u
 #define MOST_PANELS 8u
+#define MOST_SCALE 4       // columns of a normal cell
 
 // What the rows are drawn with.
 struct glyphs {
@@ -40,6 +41,7 @@ struct line_chart {
 	uint32_t *cell_of_column;      // [width + 1]: a stretched cell has several columns
 	uint32_t width;                // columns of the whole line
 	uint32_t panel;                // columns of a panel
+	int64_t scale;                 // columns of a normal cell; 1 too where a column has several cells
 };
 
 static size_t characters_of(const char *words)
@@ -333,12 +335,15 @@ static void put_scale(const struct line_chart *chart)
 {
 	const uint32_t cells = cells_of_column(chart), parts = (chart->width + chart->panel - 1) / chart->panel;
 	struct text words = {0};
-	text_put(&words, "a column is ");
-	text_put_count(&words, cells < 1 ? 1 : cells, "cell", "cells");
-	if (shape_stretched_run(&chart->shape, 0).cells > 0 && cells <= 1)
-		text_put(&words, ", a stretched cell takes more");
-	if (cells > 1)
+	if (cells <= 1) {
+		text_put(&words, "a cell is ");
+		text_put_count(&words, (uint64_t)chart->scale, "column", "columns");
+		text_put(&words, shape_stretched_run(&chart->shape, 0).cells > 0 ? ", a stretched one more" : "");
+	} else {
+		text_put(&words, "a column is ");
+		text_put_count(&words, cells, "cell", "cells");
 		text_printf(&words, ", and %s where they differ", chart->glyphs->busy_top);
+	}
 	if (parts > 1) {
 		text_printf(&words, "; too wide for %zu columns: folded into ", chart->columns);
 		text_put_count(&words, parts, "part", "parts");
@@ -401,31 +406,40 @@ static void put_limits(const struct line_chart *chart, const struct line_limit *
 	}
 }
 
-// How many columns a cell takes: a stretched one as many normal cells as it lasts, at least 2.
-static uint32_t columns_of_cell(const struct line_shape *shape, uint32_t cell)
+// How many columns a cell takes: a stretched one in proportion, but one more at least, and not more than 8 cells.
+static uint32_t columns_of_cell(const struct line_chart *chart, uint32_t cell)
 {
+	const struct line_shape *shape = &chart->shape;
 	const int64_t ticks = shape->tick_of_cell[cell + 1] - shape->tick_of_cell[cell], normal = shape->plan->clock.cell_ticks;
 	if (ticks == normal)
-		return 1;
-	const int64_t columns = (ticks + normal - 1) / normal;
-	return columns > 8 ? 8 : (uint32_t)columns;
+		return (uint32_t)chart->scale;
+	const int64_t cells = ticks > 8 * normal ? 8 * normal : ticks, columns = (cells * chart->scale + normal / 2) / normal;
+	return (uint32_t)(columns > chart->scale ? columns : chart->scale + 1);
 }
 
-// A column for each cell, if that does not take too many panels; otherwise several cells a column.
+static uint64_t columns_of_line(const struct line_chart *chart)
+{
+	uint64_t columns = 0;
+	for (uint32_t cell = 0; cell < chart->shape.cells; cell++)
+		columns += columns_of_cell(chart, cell);
+	return columns;
+}
+
+// As many columns for each cell as fit into one panel; at least one, if that does not take too many panels; otherwise several cells a column.
 static bool lay_columns(struct line_chart *chart, struct arena *arena)
 {
 	const struct line_shape *shape = &chart->shape;
 	const uint64_t most = (uint64_t)chart->panel * MOST_PANELS;
-	uint64_t wanted = 0;
-	for (uint32_t cell = 0; cell < shape->cells; cell++)
-		wanted += columns_of_cell(shape, cell);
+	for (chart->scale = MOST_SCALE; chart->scale > 1 && columns_of_line(chart) > chart->panel;)
+		chart->scale--;
+	const uint64_t wanted = columns_of_line(chart);
 	const uint32_t step = wanted <= most ? 0 : (uint32_t)((shape->cells + most - 1) / most);
 	const uint64_t width = step == 0 ? wanted : (shape->cells + step - 1) / step;
 	chart->cell_of_column = arena_array(arena, (size_t)width + 1, sizeof *chart->cell_of_column);
 	if (chart->cell_of_column == NULL)
 		return false;
 	for (uint32_t cell = 0; cell < shape->cells; cell += step == 0 ? 1 : step)
-		for (uint32_t count = step == 0 ? columns_of_cell(shape, cell) : 1; count > 0; count--)
+		for (uint32_t count = step == 0 ? columns_of_cell(chart, cell) : 1; count > 0; count--)
 			chart->cell_of_column[chart->width++] = cell;
 	chart->cell_of_column[chart->width] = shape->cells;
 	const uint32_t panels = (chart->width + chart->panel - 1) / chart->panel;

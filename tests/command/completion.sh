@@ -19,10 +19,10 @@ root=$PWD
 folder=$(mktemp -d) || exit 1
 trap 'rm -rf "$folder"' EXIT
 cd "$folder" || exit 1
-touch tide.yaml tide.yml tide.txt tide.rom0.bin tide.rom0.hex 'two words.yaml'
+touch tide.yaml tide.yml tide.txt tide.rom0.bin tide.rom0.hex old.svg 'two words.yaml'
 mkdir images
 
-same 'commands' $'build\ncheck\nlist\nprove' "$(offered '')"
+same 'commands' $'build\ncheck\ndraw\nlist\nprove' "$(offered '')"
 same 'a command begun' 'prove' "$(offered pr)"
 same 'plans and folders' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered check '')"
 same 'images too, to be proved' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yaml\ntide.yml\ntwo words.yaml' \
@@ -34,6 +34,9 @@ same 'formats' $'bin\nbin,hex\nhex' "$(offered build --format '')"
 same 'record lengths' $'16\n32' "$(offered build --record '')"
 same 'colours' $'always\nauto\nnever' "$(offered check --color '')"
 same 'catalogues' $'crystals\nparts\nstandards' "$(offered list '')"
+same 'what to draw' $'frame\nline\nphase\ntable' "$(offered draw '')"
+same 'plans to draw' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered draw line '')"
+same 'a file to draw into' $'images\nold.svg' "$(offered draw line tide.yaml -o '')"
 same 'options before a command' $'--help\n--version' "$(offered -)"
 same 'an option begun' '--unproven' "$(offered build --u)"
 same 'options after arguments' '--strict' "$(offered check tide.yaml --s)"
@@ -42,7 +45,7 @@ same 'nothing that is not there' '' "$(offered check x)"
 cd "$root" || exit 1
 long_options='(^|[^-A-Za-z])--[a-z]+(-[a-z]+)*'
 page=$(sed 's/\\-/-/g; s/\\f.//g' src/command/scanlatch.1)
-for command in check build prove list; do
+for command in check build prove draw list; do
 	options=$("$SCANLATCH" "$command" --help | grep -oE -- "$long_options" | grep -oE -- '--[a-z-]+' | sort -u)
 	same "$command: completion offers the options that its help names" "$options" "$(offered "$command" --)"
 	for option in $options; do
