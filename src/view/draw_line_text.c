@@ -14,6 +14,7 @@
 #define LEAST_COLUMNS 20u
 #define MOST_LABEL 16u
 #define MOST_PANELS 8u
+#define WIDE_ENOUGH 56u    // for the table of regions with what is asserted
 #define MOST_SCALE 4       // columns of a normal cell
 
 // What the rows are drawn with.
@@ -460,8 +461,9 @@ static size_t label_columns(const struct plan *plan, size_t columns)
 
 static void put_chart(const struct line_chart *chart, const struct line_limit *limits, size_t count)
 {
-	const struct columns regions = {region_columns, sizeof region_columns / sizeof *region_columns, chart->shape.type->region_count,
-	                                put_region_cell, chart};
+	const size_t all = sizeof region_columns / sizeof *region_columns;
+	const struct columns regions = {region_columns, chart->columns < WIDE_ENOUGH ? all - 1 : all, chart->shape.type->region_count,
+	                                put_region_cell, chart}; // the drawing shows what is asserted
 	put_heading(chart);
 	put_scale(chart);
 	for (uint32_t column = 0; column < chart->width; column += chart->panel)
