@@ -143,12 +143,13 @@ static void draw_box(const struct frame_drawing *drawing, const struct panel *pa
 	put_decimal_time(svg, "data-us", clock, across, 1000000);
 	put_decimal_time(svg, "data-ms", clock, down, 1000);
 	svg_close(svg);
-	if (placed > 0 || right - left < PX(300) || bottom - top < PX(80))
+	if (placed > 0 || right - left < PX(320) || bottom - top < PX(80))
 		return;
 	struct text words = {0};
 	const int64_t x = (left + right) / 2, y = (top + bottom) / 2;
-	svg_box(svg, "plate", x - PX(140), y - PX(32), PX(280), PX(64));
-	text_printf(&words, "%" PRIu32 " cells \xC3\x97 %" PRIu32 " %s", box->end_cell - box->first_cell, box->rows, rows_word(drawing, box->rows));
+	svg_box(svg, "plate", x - PX(150), y - PX(32), PX(300), PX(64));
+	text_printf(&words, "%" PRIu32 " cells \xC3\x97 %" PRIu32 " %s%s", box->end_cell - box->first_cell, box->rows, rows_word(drawing, box->rows),
+	            panel->field_count > 1 ? " a field" : "");
 	svg_text(svg, "name", x, y - PX(6), ANCHOR_MIDDLE, text_string(&words));
 	words.length = 0;
 	text_put_ticks_us(&words, clock, across);

@@ -219,7 +219,7 @@ void svg_fitted(struct svg *svg, const char *class, int64_t x, int64_t y, enum s
 
 static void put_span(struct svg *svg, const char *class, const char *gap, const char *words)
 {
-	svg->in_words = true; // a break of the line would be seen as a space
+	svg->in_words = true;
 	svg_open(svg, "tspan");
 	svg_attribute(svg, "class", class);
 	if (gap != NULL)
@@ -234,10 +234,14 @@ void svg_named(struct svg *svg, int64_t x, int64_t y, enum svg_anchor anchor, in
 	bool fits;
 	const int64_t room = width - svg_words_width(words, 13) - PX(8);
 	struct text cut = {0};
+	bool shorter;
 	const size_t length = bytes_within(name, 16, room, &fits);
-	text_put_bytes(&cut, name, fits ? length : bytes_within(name, 16, room - PX(16), &fits));
-	text_put(&cut, name[cut.length] == '\0' ? "" : "\xE2\x80\xA6");
+	text_put_bytes(&cut, name, fits ? length : bytes_within(name, 16, room - PX(16), &shorter));
+	text_put(&cut, fits ? "" : "\xE2\x80\xA6");
 	open_text(svg, "pair", x, y, anchor);
+	svg->in_words = true; // a break of the line would be seen as a space
+	if (!fits)
+		svg_title(svg, name);
 	put_span(svg, "name", NULL, text_string(&cut));
 	put_span(svg, "small", "8", words);
 	svg_close(svg);

@@ -71,7 +71,7 @@ void svg_text(struct svg *svg, const char *class, int64_t x, int64_t y, enum svg
 // the whole is their title.
 void svg_fitted(struct svg *svg, const char *class, int64_t x, int64_t y, enum svg_anchor anchor, int64_t width, unsigned size,
                 const char *words);
-// A name and, smaller, words behind it; the name is cut where both would be wider than `width`.
+// A name and, smaller, words behind it; the name is cut where both would be wider than `width`, and then the whole is the title.
 void svg_named(struct svg *svg, int64_t x, int64_t y, enum svg_anchor anchor, int64_t width, const char *name, const char *words);
 // <title>: what a reader's pointer shows over the element that was opened.
 void svg_title(struct svg *svg, const char *words);

@@ -117,7 +117,7 @@ static void a_name_is_cut_and_its_words_stay(void **state)
 	(void)state;
 	assert_put(put_named,
 	           "<text class=\"pair\" x=\"0\" y=\"0\"><tspan class=\"name\">burst</tspan><tspan class=\"small\" dx=\"8\">4 cells</tspan></text>"
-	           "<text class=\"pair\" x=\"0\" y=\"0\" text-anchor=\"end\"><tspan class=\"name\">a \xE2\x80\xA6</tspan>"
+	           "<text class=\"pair\" x=\"0\" y=\"0\" text-anchor=\"end\"><title>a name beyond measure</title><tspan class=\"name\">a \xE2\x80\xA6</tspan>"
 	           "<tspan class=\"small\" dx=\"8\">4 cells</tspan></text>");
 }
 
