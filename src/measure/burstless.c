@@ -2,23 +2,24 @@
 #include "base/arena.h"
 #include "measure/tally.h"
 
-// Places at which fields begin, around the trace: -1 is the last of the lap before.
+// Places at which fields begin, around the trace: -1 is the last of the lap before. A line's place may lie more than a lap after the first
+// of them: what fields are measured by need not be what lines are.
 struct zeros {
 	const int64_t *list;
 	int64_t count;
 	int64_t total;
 };
 
-static int64_t zero_at(const struct zeros *zeros, int64_t index)
-{
-	if (index < 0)
-		return zeros->list[zeros->count + index] - zeros->total;
-	return index < zeros->count ? zeros->list[index] : zeros->list[index - zeros->count] + zeros->total;
-}
-
 static int64_t wrapped(const struct zeros *zeros, int64_t index)
 {
-	return index < 0 ? index + zeros->count : index >= zeros->count ? index - zeros->count : index;
+	const int64_t rest = index % zeros->count;
+	return rest < 0 ? rest + zeros->count : rest;
+}
+
+static int64_t zero_at(const struct zeros *zeros, int64_t index)
+{
+	const int64_t within = wrapped(zeros, index);
+	return zeros->list[within] + (index - within) / zeros->count * zeros->total;
 }
 
 struct numbering {
