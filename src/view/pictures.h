@@ -1,6 +1,6 @@
 // Pictures of a plan: what a builder looks at while wiring, burning and probing. Each is put as SVG, alone or inline in a page
-// (struct picture in svg.h; then the page has palette_put_style's rules once), and is at most a few hundred thousand bytes: what
-// there is too much of is left out, and the picture says so. All return false when memory is out; then what was put is of no use.
+// (struct picture in svg.h; then the page has palette_put_style's rules once), and is at most some hundred thousand bytes, of a hostile
+// plan a few millions: what there is too much of is left out, and the picture says so. All return false when memory is out; then what was put is of no use.
 //
 // What a page can show, hide and tell of a picture:
 //   every picture  svg.scanlatch[role=img], named by its <title> and <desc>; ids are ID-title, ID-desc, and ID-HUE of patterns
@@ -11,10 +11,13 @@
 //                  g.composite: the composite level, in it rect.run[data-kind: sync, blanking, burst, picture, and data-cell to data-us]
 //                  g.limit[data-item, data-value, data-low, data-high, data-unit: "s" or "cycles"; exact; data-kept: 0 or 1]
 //                  g.plot[data-ticks, data-left, data-width]: the ticks of the line and where they are drawn, in pixels
-//   view_frame_svg g.field[data-field], g.hue-HUE: all that has a hue; rect.box[data-cell, data-cells, data-row, data-rows, data-us, data-ms]
-//                  g.block[data-block, data-line, data-lines, data-type]
-//   view_table_svg g.map[data-stage, data-bits], g.use[data-type, data-rows]
-//   view_phase_svg path.phase, g.plot[data-lines]
+//   view_frame_svg g.field[data-field: 1 or 2], in it g.hue-HUE: all cells that have a hue; rect.box[data-cell, data-cells, data-row,
+//                  data-rows, data-us, data-ms]: the picture's box, of rows of the field; g.block[data-block, data-rows, data-type]
+//   view_table_svg g.map[data-stage: loop, line or frame, data-bits], in it g.use[data-type, data-rows]
+//   view_phase_svg g.plot[data-lines], in it path.phase, and, where lines are few, rect.run[data-line, data-lines, data-phase: exact, in
+//                  cycles], which takes the pointer and has the same in words as its <title>
+// HUE is sync, vertical, burst, blanking, picture, stretch or other (palette.h). A picture has no size of its own in a page but the attributes width and
+// height, in pixels, and a viewBox: a page may scale it down with svg.scanlatch { max-width: 100%; height: auto }, or let it scroll.
 // Microseconds in attributes are rounded to six places as in the JSON of `check`; ticks and cells are exact.
 #ifndef SCANLATCH_VIEW_PICTURES_H
 #define SCANLATCH_VIEW_PICTURES_H

@@ -95,7 +95,7 @@ static void a_type_is_shown_by_a_line_between_others(void **state)
 	release(&laid);
 }
 
-// 50 lines of 1 ms are 20 Hz … the frame of 108 us is neither; so levels are judged with clocks that make it about 50 and 60 Hz.
+// The levels of the same frame with a clock that makes it come so often, and with a standard of a name.
 static const struct composite_levels *levels_at(struct fraction master_hz, const char *standard)
 {
 	struct laid laid = lay_quay();

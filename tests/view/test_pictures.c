@@ -22,8 +22,7 @@ static struct laid lay_text(const char *text)
 	return laid;
 }
 
-// Ten lines of 20 cells and 1 1/2 at each end of a field, interlaced: halves of 10 cells. Field 1 is rows 0 to 10, the last of which has half a line
-// of picture; field 2 begins with the other half of row 10.
+// Lines of 20 cells and halves of 10: two fields, the first of which ends with half a line of picture, in whose other half the second begins.
 static const char interlaced_plan[] =
 	"scanlatch: 1\n"
 	"name: berth\n"
@@ -199,7 +198,7 @@ static char *phase_of(const char *clock)
 	return text.bytes;
 }
 
-// 90 ticks a line are 9 cycles of a tenth of the clock: flat. Of an eighth of a quarter … 90/4 = 22 1/2: by turns 0 and 1/2.
+// 90 ticks a line are 9 cycles of a tenth of the clock: flat. Of a quarter they are 22 1/2: by turns 0 and 1/2. 60 pixels a line, 240 a cycle.
 static void the_phase_is_flat_or_steps(void **state)
 {
 	(void)state;
@@ -213,7 +212,7 @@ static void the_phase_is_flat_or_steps(void **state)
 	free(turns);
 }
 
-// 90 × 3/997 of a cycle a line: 997 lines until it repeats, 256 more drawn would be too many.
+// 90 ticks of 10 MHz are 270/997 of a cycle of 30000/997 kHz, so it takes 997 lines; with 1009 there are more than are drawn.
 static void a_long_phase_is_bounded(void **state)
 {
 	(void)state;
