@@ -382,7 +382,7 @@ static void draw_whole(struct frame_drawing *drawing, struct text *out, const st
 	put_title(timeline, &title);
 	put_description(drawing, &description);
 	svg_begin(svg, out, picture, width, panels_end + LEGEND_HEIGHT + (left_out ? PX(24) : 0), text_string(&title), text_string(&description));
-	svg_fitted(svg, "title", PX(16), PX(34), ANCHOR_START, width - PX(32), 21, text_string(&title));
+	svg_fitted(svg, "title", PX(16), PX(34), ANCHOR_START, width - PX(32), SVG_TITLE_SIZE, text_string(&title));
 	svg_fitted(svg, "note", PX(16), PX(58), ANCHOR_START, width - PX(32), 15, timeline->plan->note);
 	for (unsigned index = 0; index < drawing->panel_count; index++)
 		draw_panel(drawing, &drawing->panels[index]);

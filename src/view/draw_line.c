@@ -41,9 +41,9 @@ static int64_t region_width(const struct line_drawing *drawing, size_t index)
 static int64_t callout_width(const struct line_drawing *drawing, size_t index)
 {
 	struct text words = {0};
-	text_printf(&words, "%s  ", drawing->shape.type->regions[index].name);
 	put_region_words(drawing, &words, index);
-	const int64_t width = svg_words_width(text_string(&words), 15) + PX(12);
+	const int64_t width = svg_words_width(drawing->shape.type->regions[index].name, SVG_NAME_SIZE) +
+	                      svg_words_width(text_string(&words), 13) + PX(24);
 	svg_release(drawing->svg, &words);
 	return width;
 }
@@ -52,7 +52,7 @@ static bool fits_in_box(const struct line_drawing *drawing, size_t index)
 {
 	struct text words = {0};
 	put_region_words(drawing, &words, index);
-	const int64_t lengths = svg_words_width(text_string(&words), 13), name = svg_words_width(drawing->shape.type->regions[index].name, 16);
+	const int64_t lengths = svg_words_width(text_string(&words), 13), name = svg_words_width(drawing->shape.type->regions[index].name, SVG_NAME_SIZE);
 	svg_release(drawing->svg, &words);
 	return (lengths > name ? lengths : name) + PX(8) <= region_width(drawing, index);
 }
@@ -348,7 +348,7 @@ static void put_exact(struct svg *svg, const char *name, struct fraction value)
 static void draw_limit_words(const struct line_drawing *drawing, const struct line_limit *limit, int64_t left, int64_t right, int64_t y,
                              const char *words)
 {
-	const int64_t width = svg_words_width(words, 13) + PX(8);
+	const int64_t width = svg_words_width(words, limit->kept ? 13 : 15) + PX(8); // missed ones are heavy
 	const char *class = limit->kept ? "small" : "small missed";
 	struct svg *svg = drawing->svg;
 	if (right + width <= LINE_LEFT + drawing->width + LINE_RIGHT) {
@@ -455,7 +455,7 @@ static void draw_parts(struct line_drawing *drawing, const char *title)
 	struct svg *svg = drawing->svg;
 	const struct plan *plan = drawing->shape.plan;
 	const int64_t room = LINE_LEFT + drawing->width + LINE_RIGHT - PX(32);
-	svg_fitted(svg, "title", PX(16), PX(34), ANCHOR_START, room, 21, title);
+	svg_fitted(svg, "title", PX(16), PX(34), ANCHOR_START, room, SVG_TITLE_SIZE, title);
 	svg_fitted(svg, "note", PX(16), PX(58), ANCHOR_START, room, 15, plan->note);
 	int64_t y = HEAD_HEIGHT + regions_height(drawing);
 	const int64_t traces = y, composite = traces + line_traces_height(drawing), rulers = composite + line_composite_height(drawing);

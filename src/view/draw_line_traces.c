@@ -121,7 +121,7 @@ static void draw_trace_label(const struct line_drawing *drawing, const struct si
 {
 	struct svg *svg = drawing->svg;
 	struct text words = {0};
-	svg_fitted(svg, "name", PX(16), y + PX(18), ANCHOR_START, LINE_LEFT - PX(36), 16, signal->name);
+	svg_fitted(svg, "name", PX(16), y + PX(18), ANCHOR_START, LINE_LEFT - PX(36), SVG_NAME_SIZE, signal->name);
 	put_signal_words(&words, signal);
 	svg_fitted(svg, "small", PX(16), y + PX(36), ANCHOR_START, LINE_LEFT - PX(36), 13, text_string(&words));
 	svg_text(svg, "small", LINE_LEFT - PX(6), y + HIGH_Y + PX(5), ANCHOR_END, "1");

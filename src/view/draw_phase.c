@@ -225,7 +225,7 @@ static void draw_words(const struct phase_drawing *drawing, const char *title, c
 	const int64_t room = PHASE_LEFT + PHASE_WIDTH + PHASE_RIGHT - PX(32);
 	int64_t y = drawing->top + PHASE_HEIGHT + PX(66);
 	struct text words = {0};
-	svg_fitted(svg, "title", PX(16), PX(34), ANCHOR_START, room, 21, title);
+	svg_fitted(svg, "title", PX(16), PX(34), ANCHOR_START, room, SVG_TITLE_SIZE, title);
 	svg_fitted(svg, "note", PX(16), PX(58), ANCHOR_START, room, 15, drawing->timeline->plan->note);
 	svg_fitted(svg, "", PHASE_LEFT, y, ANCHOR_START, room - PHASE_LEFT, 15, figures);
 	y += PX(24);

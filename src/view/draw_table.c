@@ -303,7 +303,7 @@ static int64_t draw_codes(const struct table_drawing *drawing, size_t index, int
 		rows_by_code(drawing->table, field, counts);
 	text_printf(&words, "decoder on %s, bits %u..%u", field->name, field->high, field->low);
 	if (svg != NULL)
-		svg_fitted(svg, "name", x, y + PX(20), ANCHOR_START, LIST_WIDTH - PX(20), 16, text_string(&words));
+		svg_fitted(svg, "name", x, y + PX(20), ANCHOR_START, LIST_WIDTH - PX(20), SVG_NAME_SIZE, text_string(&words));
 	y += PX(32);
 	for (uint32_t code = 0; code >> width_of(field) == 0 && shown < MOST_CODES; code++) {
 		if (!code_used(drawing, index, code))
@@ -480,7 +480,7 @@ static void draw_whole(struct table_drawing *drawing, struct text *out, const st
 	text_printf(&title, "%s: the addresses of the EEPROMs", drawing->plan->name);
 	put_description(drawing, &description);
 	svg_begin(svg, out, picture, picture_width(drawing), height, text_string(&title), text_string(&description));
-	svg_fitted(svg, "title", PX(16), PX(34), ANCHOR_START, picture_width(drawing) - PX(32), 21, text_string(&title));
+	svg_fitted(svg, "title", PX(16), PX(34), ANCHOR_START, picture_width(drawing) - PX(32), SVG_TITLE_SIZE, text_string(&title));
 	svg_fitted(svg, "note", PX(16), PX(58), ANCHOR_START, picture_width(drawing) - PX(32), 15, drawing->plan->note);
 	int64_t y = HEAD_HEIGHT;
 	draw_banks(drawing, bank, banks, bank_count, y);

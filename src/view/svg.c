@@ -157,12 +157,16 @@ void svg_title(struct svg *svg, const char *words)
 	svg_close(svg);
 }
 
-// Latin letters are about half as wide as they are high; of other scripts some are as wide as high.
+// Thousandths of their size that characters are wide in a wide face; those of other scripts may be as wide as high.
 static int64_t character_width(unsigned char first, unsigned size)
 {
 	if (first >= 0xE1u)
 		return (int64_t)size * 1050;
-	return (int64_t)size * (first >= 'A' && first <= 'Z' ? 680 : 550);
+	if (strchr("mwMW@%", first) != NULL)
+		return (int64_t)size * 1000;
+	if (strchr(" .,:;'|!()[]fijltrI", first) != NULL)
+		return (int64_t)size * 390;
+	return (int64_t)size * (first >= 'A' && first <= 'Z' ? 720 : 600);
 }
 
 static size_t character_bytes(const char *bytes)
@@ -235,8 +239,8 @@ void svg_named(struct svg *svg, int64_t x, int64_t y, enum svg_anchor anchor, in
 	const int64_t room = width - svg_words_width(words, 13) - PX(8);
 	struct text cut = {0};
 	bool shorter;
-	const size_t length = bytes_within(name, 16, room, &fits);
-	text_put_bytes(&cut, name, fits ? length : bytes_within(name, 16, room - PX(16), &shorter));
+	const size_t length = bytes_within(name, SVG_NAME_SIZE, room, &fits);
+	text_put_bytes(&cut, name, fits ? length : bytes_within(name, SVG_NAME_SIZE, room - PX(16), &shorter));
 	text_put(&cut, fits ? "" : "\xE2\x80\xA6");
 	open_text(svg, "pair", x, y, anchor);
 	svg->in_words = true; // a break of the line would be seen as a space

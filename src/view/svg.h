@@ -17,6 +17,11 @@ struct text;
 
 #define SVG_DEPTH 16
 
+// Sizes for svg_fitted and svg_words_width of words whose class is heavy: as wide as lighter ones so high. The others are as high as
+// they are: 15, and 13 if small.
+#define SVG_TITLE_SIZE 24
+#define SVG_NAME_SIZE 17
+
 // How a picture stands: as a file of its own, with an XML heading and its style, or inline in a page of HTML, which has the style
 // (svg_put_style) once.
 struct picture {
