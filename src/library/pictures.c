@@ -146,8 +146,8 @@ char *scanlatch_draw_frame(const scanlatch_plan *plan, unsigned bank, bool inter
 		return NULL;
 	}
 	if (interleaved && !interlaced) {
-		diagnose(messages->diagnostics, RULE_NOT_DRAWN, whole_of(plan), "there are no fields to interleave: the frame of \"%s\" is not interlaced",
-		         member->plan->name);
+		diagnose(messages->diagnostics, RULE_NOT_DRAWN, whole_of(plan),
+		         "there are no fields to interleave: the frame of \"%s\" is not interlaced", member->plan->name);
 		return NULL;
 	}
 	return take_picture(&text, view_frame_svg(&text, &alone, member->timeline, interleaved), plan, messages);
@@ -160,12 +160,14 @@ char *scanlatch_draw_phase(const scanlatch_plan *plan, unsigned bank, scanlatch_
 	if (member == NULL)
 		return NULL;
 	struct proofs *proofs = proofs_of_plan(member->timeline);
+	const char *why = member->plan->clock.has_subcarrier ? "has a subcarrier whose cycles per tick do not fit 64 bits" : "has no subcarrier";
 	char *string = NULL;
-	if (proofs != NULL && proofs->colour.phases.parts == 0)
-		diagnose(messages->diagnostics, RULE_NOT_DRAWN, whole_of(plan), "there is no phase to draw: \"%s\" %s", member->plan->name,
-		         member->plan->clock.has_subcarrier ? "has a subcarrier whose cycles per tick do not fit 64 bits" : "has no subcarrier");
-	else
-		string = take_picture(&text, proofs != NULL && view_phase_svg(&text, &alone, member->timeline, &proofs->colour), plan, messages);
+	if (proofs != NULL && proofs->colour.phases.parts == 0) {
+		diagnose(messages->diagnostics, RULE_NOT_DRAWN, whole_of(plan), "there is no phase to draw: \"%s\" %s", member->plan->name, why);
+	} else {
+		const bool drawn = proofs != NULL && view_phase_svg(&text, &alone, member->timeline, &proofs->colour);
+		string = take_picture(&text, drawn, plan, messages);
+	}
 	proofs_destroy(proofs);
 	return string;
 }

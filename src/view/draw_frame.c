@@ -58,26 +58,15 @@ static struct picture_box box_of_field(const struct frame_drawing *drawing, cons
 	return box;
 }
 
-static int64_t tick_of_cell(const struct timeline *timeline, uint32_t line, uint32_t cell)
-{
-	const struct clock *clock = &timeline->plan->clock;
-	const int stretch = timeline->plan->role_signal[ROLE_STRETCH];
-	const struct frame_line *at = &timeline->lines[line];
-	int64_t tick = at->first_tick;
-	for (uint32_t index = 0; index < cell; index++)
-		tick += clock->cell_ticks + (stretch >= 0 && (timeline->asserted[at->first_cell + index] >> stretch & 1) != 0 ? clock->stretch_ticks : 0);
-	return tick;
-}
-
 // Ticks of the box across, in its first row, and down, from there to the last row's end.
-static void box_ticks(const struct frame_drawing *drawing, const struct frame_field *field, const struct picture_box *box, int64_t *across,
-                      int64_t *down)
+static void box_ticks(const struct frame_drawing *drawing, const struct frame_field *field, const struct picture_box *box,
+                      int64_t *across, int64_t *down)
 {
 	const struct timeline *timeline = drawing->rows.timeline;
 	const struct frame_row *first = &drawing->rows.rows[field_row(&drawing->rows, field, box->first_row)];
 	const uint32_t after = field_row(&drawing->rows, field, box->last_row + 1);
 	const int64_t start = timeline->lines[first->line].first_tick, end = timeline->lines[drawing->rows.rows[after].line].first_tick;
-	*across = tick_of_cell(timeline, first->line, box->end_cell) - tick_of_cell(timeline, first->line, box->first_cell);
+	*across = tick_in_frame(timeline, first->line, box->end_cell) - tick_in_frame(timeline, first->line, box->first_cell);
 	*down = end > start ? end - start : end + timeline->tick_count - start;
 }
 
@@ -148,8 +137,8 @@ static void draw_box(const struct frame_drawing *drawing, const struct panel *pa
 	struct text words = {0};
 	const int64_t x = (left + right) / 2, y = (top + bottom) / 2;
 	svg_box(svg, "plate", x - PX(150), y - PX(32), PX(300), PX(64));
-	text_printf(&words, "%" PRIu32 " cells \xC3\x97 %" PRIu32 " %s%s", box->end_cell - box->first_cell, box->rows, rows_word(drawing, box->rows),
-	            panel->field_count > 1 ? " a field" : "");
+	text_printf(&words, "%" PRIu32 " cells \xC3\x97 %" PRIu32 " %s%s", box->end_cell - box->first_cell, box->rows,
+	            rows_word(drawing, box->rows), panel->field_count > 1 ? " a field" : "");
 	svg_text(svg, "name", x, y - PX(6), ANCHOR_MIDDLE, text_string(&words));
 	words.length = 0;
 	text_put_ticks_us(&words, clock, across);
@@ -381,7 +370,8 @@ static void draw_whole(struct frame_drawing *drawing, struct text *out, const st
 	struct text title = {0}, description = {0};
 	put_title(timeline, &title);
 	put_description(drawing, &description);
-	svg_begin(svg, out, picture, width, panels_end + LEGEND_HEIGHT + (left_out ? PX(24) : 0), text_string(&title), text_string(&description));
+	svg_begin(svg, out, picture, width, panels_end + LEGEND_HEIGHT + (left_out ? PX(24) : 0), text_string(&title),
+	          text_string(&description));
 	svg_fitted(svg, "title", PX(16), PX(34), ANCHOR_START, width - PX(32), SVG_TITLE_SIZE, text_string(&title));
 	svg_fitted(svg, "note", PX(16), PX(58), ANCHOR_START, width - PX(32), 15, timeline->plan->note);
 	for (unsigned index = 0; index < drawing->panel_count; index++)

@@ -119,7 +119,8 @@ int64_t frame_blocks_height(const struct frame_drawing *drawing, const struct pa
 	return needed > panel->height ? needed : panel->height;
 }
 
-static void put_block_lines(const struct frame_drawing *drawing, const struct panel *panel, const struct named_block *block, struct text *words)
+static void put_block_lines(const struct frame_drawing *drawing, const struct panel *panel, const struct named_block *block,
+                            struct text *words)
 {
 	const struct frame_field *field = &drawing->rows.fields[panel->fields[block->placed].field];
 	const uint32_t first = drawing->rows.rows[field_row(&drawing->rows, field, block->row)].line;

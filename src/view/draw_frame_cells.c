@@ -29,7 +29,8 @@ static void visit_field(const struct frame_drawing *drawing, const struct panel_
 		uint32_t end = row;
 		do
 			end += field->rows - end < drawing->row_step ? field->rows - end : drawing->row_step;
-		while (end < field->rows && placed->step == 1 && frame_rows_alike(&drawing->rows, first, field_row(&drawing->rows, field, end)));
+		while (end < field->rows && placed->step == 1 &&
+		       frame_rows_alike(&drawing->rows, first, field_row(&drawing->rows, field, end)));
 		visit_row(drawing, first, placed->first + (int64_t)row * placed->step, end - row, visit, context);
 		row = end;
 	}

@@ -52,13 +52,14 @@ static bool fits_in_box(const struct line_drawing *drawing, size_t index)
 {
 	struct text words = {0};
 	put_region_words(drawing, &words, index);
-	const int64_t lengths = svg_words_width(text_string(&words), 13), name = svg_words_width(drawing->shape.type->regions[index].name, SVG_NAME_SIZE);
+	const int64_t lengths = svg_words_width(text_string(&words), 13);
+	const int64_t name = svg_words_width(drawing->shape.type->regions[index].name, SVG_NAME_SIZE);
 	svg_release(drawing->svg, &words);
 	return (lengths > name ? lengths : name) + PX(8) <= region_width(drawing, index);
 }
 
-// Rows of callouts above the strip, the first on top. A leader goes straight down from its name: from its beginning, or at the picture's
-// right side, where a name stands before its region, from its end. No leader may cross a name.
+// Rows of callouts above the strip, the first on top. A leader goes straight down from its name: from its beginning, or at the
+// picture's right side, where a name stands before its region, from its end. No leader may cross a name.
 struct callout_room {
 	int64_t ends[MOST_CALLOUT_ROWS];    // of names with the leader at their beginning, so far
 	int64_t leaders[MOST_CALLOUT_ROWS]; // the last of them
@@ -117,7 +118,8 @@ static void list_callouts(struct line_drawing *drawing)
 		struct callout *callout = &drawing->callouts[drawing->callout_count++];
 		const int64_t leader = line_x(drawing, run_of_region(drawing, index).tick) + PX(1), width = callout_width(drawing, index);
 		const bool before = leader + width > end;
-		*callout = (struct callout){.region = index, .leader = leader, .width = width, .before = before, .x = before ? leader - width : leader};
+		*callout = (struct callout){.region = index, .leader = leader, .width = width, .before = before,
+		                            .x = before ? leader - width : leader};
 	}
 }
 
@@ -144,11 +146,13 @@ static void draw_callout(const struct line_drawing *drawing, const struct callou
 {
 	struct svg *svg = drawing->svg;
 	struct text words = {0};
-	const int64_t base = y + (int64_t)callout->row * CALLOUT_HEIGHT + PX(15), strip = y + (int64_t)drawing->callout_rows * CALLOUT_HEIGHT;
+	const int64_t base = y + (int64_t)callout->row * CALLOUT_HEIGHT + PX(15);
+	const int64_t strip = y + (int64_t)drawing->callout_rows * CALLOUT_HEIGHT;
 	svg_line(svg, "hair", callout->leader, base - PX(11), callout->leader, strip);
 	put_region_words(drawing, &words, callout->region);
 	svg_named(svg, callout->before ? callout->leader - PX(5) : callout->leader + PX(5), base,
-	          callout->before ? ANCHOR_END : ANCHOR_START, callout->width, drawing->shape.type->regions[callout->region].name, text_string(&words));
+	          callout->before ? ANCHOR_END : ANCHOR_START, callout->width, drawing->shape.type->regions[callout->region].name,
+	          text_string(&words));
 	svg_release(svg, &words);
 }
 
@@ -249,7 +253,8 @@ static void draw_time_ruler(struct line_drawing *drawing, int64_t y)
 	const struct clock *clock = &drawing->shape.plan->clock;
 	struct fraction seconds, nanoseconds, offset;
 	struct text words = {0};
-	if (!seconds_of_ticks(clock, drawing->shape.ticks, &seconds) || !fraction_multiply(seconds, fraction_whole(1000000000), &nanoseconds))
+	if (!seconds_of_ticks(clock, drawing->shape.ticks, &seconds) ||
+	    !fraction_multiply(seconds, fraction_whole(1000000000), &nanoseconds))
 		return;
 	const int64_t length = fraction_floor(nanoseconds), coarse = ruler_step(length, 14), fine = ruler_step(length, 140);
 	svg_text(drawing->svg, "name", PX(16), y + PX(16), ANCHOR_START, "us");
@@ -261,7 +266,8 @@ static void draw_time_ruler(struct line_drawing *drawing, int64_t y)
 			break;
 		words.length = 0;
 		text_put_rounded(&words, time, 3);
-		draw_mark(drawing, LINE_LEFT + svg_share(drawing->width, offset.numerator, offset.denominator), y, at % coarse == 0, text_string(&words));
+		draw_mark(drawing, LINE_LEFT + svg_share(drawing->width, offset.numerator, offset.denominator), y, at % coarse == 0,
+		          text_string(&words));
 	}
 	svg_release(drawing->svg, &words);
 }
@@ -502,8 +508,8 @@ bool view_line_svg(struct text *out, const struct picture *picture, const struct
 	const bool made = arena != NULL && prepare(&drawing, timeline, line, arena);
 	if (made) {
 		struct text title = {0}, description = {0};
-		const int64_t height = HEAD_HEIGHT + regions_height(&drawing) + line_traces_height(&drawing) + line_composite_height(&drawing) + LINE_RULERS_HEIGHT +
-		                       limits_height(&drawing) + GAP + (drawing.has_composite ? 2 : 1) * FOOT_LINE + PX(12);
+		const int64_t height = HEAD_HEIGHT + regions_height(&drawing) + line_traces_height(&drawing) +
+		                       line_composite_height(&drawing) + LINE_RULERS_HEIGHT + limits_height(&drawing) + GAP + (drawing.has_composite ? 2 : 1) * FOOT_LINE + PX(12);
 		put_heading(&drawing.shape, &title);
 		put_description(&drawing, &description);
 		svg_begin(&svg, out, picture, LINE_LEFT + drawing.width + LINE_RIGHT, height, text_string(&title), text_string(&description));

@@ -170,7 +170,8 @@ static void put_level_row(const struct line_chart *chart, unsigned row, uint32_t
 	for (uint32_t column = from; column < end; column++) {
 		const enum hue kind = shape_kind(chart->shape.plan, chart->shape.asserted[chart->cell_of_column[column]]);
 		const unsigned own = kind == HUE_SYNC || kind == HUE_VERTICAL ? 2 : kind == HUE_PICTURE || kind == HUE_OTHER ? 0 : 1;
-		text_put(chart->out, own != row ? " " : kind == HUE_BURST ? chart->glyphs->burst : row == 0 ? chart->glyphs->picture : chart->glyphs->level);
+		const char *glyph = kind == HUE_BURST ? chart->glyphs->burst : own == 0 ? chart->glyphs->picture : chart->glyphs->level;
+		text_put(chart->out, own == row ? glyph : " ");
 	}
 	end_row(chart);
 	chart->out->failed = chart->out->failed || label.failed;
@@ -426,7 +427,8 @@ static uint64_t columns_of_line(const struct line_chart *chart)
 	return columns;
 }
 
-// As many columns for each cell as fit into one panel; at least one, if that does not take too many panels; otherwise several cells a column.
+// As many columns for each cell as fit into one panel; at least one, if that does not take too many panels; otherwise several
+// cells a column.
 static bool lay_columns(struct line_chart *chart, struct arena *arena)
 {
 	const struct line_shape *shape = &chart->shape;

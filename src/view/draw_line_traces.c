@@ -227,7 +227,8 @@ static void levels_of_kind(const struct composite_levels *levels, enum hue kind,
 	}
 }
 
-static void draw_level_run(const struct line_drawing *drawing, const struct composite_levels *levels, const struct shape_run *run, int64_t y)
+static void draw_level_run(const struct line_drawing *drawing, const struct composite_levels *levels, const struct shape_run *run,
+                           int64_t y)
 {
 	const enum hue kind = (enum hue)run->value;
 	const struct hue_row *hue = palette_hue(kind);
@@ -289,8 +290,8 @@ static void draw_level_path(const struct line_drawing *drawing, const struct com
 }
 
 // A level's line, and beside it its name; black and blanking are near each other, so names may stand a little off.
-static void draw_level(const struct line_drawing *drawing, const struct composite_levels *levels, int64_t level, const char *name, int64_t y,
-                       int64_t off)
+static void draw_level(const struct line_drawing *drawing, const struct composite_levels *levels, int64_t level, const char *name,
+                       int64_t y, int64_t off)
 {
 	struct text words = {0};
 	const int64_t at = y + level_y(levels, level), end = LINE_LEFT + drawing->width;

@@ -140,7 +140,8 @@ static void draw_axes(const struct phase_drawing *drawing)
 static void draw_ruler(const struct phase_drawing *drawing)
 {
 	struct svg *svg = drawing->svg;
-	const int64_t coarse = ruler_step(drawing->lines, 16), fine = ruler_step(drawing->lines, 160), y = drawing->top + PHASE_HEIGHT + PX(10);
+	const int64_t coarse = ruler_step(drawing->lines, 16), fine = ruler_step(drawing->lines, 160);
+	const int64_t y = drawing->top + PHASE_HEIGHT + PX(10);
 	struct text words = {0};
 	svg_text(svg, "name", PHASE_LEFT - PX(10), y + PX(23), ANCHOR_END, "line");
 	for (int64_t line = 0; line <= drawing->lines; line += fine) {
@@ -166,7 +167,8 @@ static void draw_frames(const struct phase_drawing *drawing)
 		svg_line(drawing->svg, "guide", x, drawing->top - PX(10), x, drawing->top + PHASE_HEIGHT);
 		words.length = 0;
 		text_printf(&words, "frame %" PRId64, frame);
-		svg_fitted(drawing->svg, "small", x + PX(4), drawing->top - PX(6), ANCHOR_START, line_x(drawing, lines) - PHASE_LEFT, 13, text_string(&words));
+		svg_fitted(drawing->svg, "small", x + PX(4), drawing->top - PX(6), ANCHOR_START, line_x(drawing, lines) - PHASE_LEFT, 13,
+		           text_string(&words));
 	}
 	svg_release(drawing->svg, &words);
 }

@@ -218,7 +218,8 @@ static void draw_strip(const struct table_drawing *drawing, const struct address
 		words.length = 0;
 		text_printf(&words, "%s %" PRIu32 ": ", field->name, code);
 		put_asserting(drawing, index, code, &words);
-		svg_fitted(drawing->svg, "small", x + PX(8), (y + end) / 2 + PX(5), ANCHOR_START, STRIP_WIDTH - PX(28), 13, text_string(&words));
+		svg_fitted(drawing->svg, "small", x + PX(8), (y + end) / 2 + PX(5), ANCHOR_START, STRIP_WIDTH - PX(28), 13,
+		           text_string(&words));
 	}
 	svg_release(drawing->svg, &words);
 }
@@ -283,7 +284,8 @@ static bool code_used(const struct table_drawing *drawing, size_t field, uint32_
 {
 	for (size_t signal = 0; signal < drawing->plan->signal_count; signal++) {
 		const struct signal *decoded = &drawing->plan->signals[signal];
-		for (size_t index = 0; decoded->origin == FROM_FIELD && decoded->field == field && index < drawing->table->code_counts[signal]; index++)
+		const bool here = decoded->origin == FROM_FIELD && decoded->field == field;
+		for (size_t index = 0; here && index < drawing->table->code_counts[signal]; index++)
 			if (drawing->table->codes[signal][index] == code)
 				return true;
 	}
@@ -424,8 +426,8 @@ static void draw_banks(const struct table_drawing *drawing, unsigned bank, const
 	struct text words = {0};
 	if (count == 0)
 		return;
-	text_printf(&words, "banks, chosen by %u jumper%s; this picture is bank %u", drawing->plan->bank_bits, drawing->plan->bank_bits == 1 ? "" : "s",
-	            bank);
+	text_printf(&words, "banks, chosen by %u jumper%s; this picture is bank %u", drawing->plan->bank_bits,
+	            drawing->plan->bank_bits == 1 ? "" : "s", bank);
 	if (count > MOST_BANKS)
 		text_printf(&words, " of %zu, of which %u are named here", count, MOST_BANKS);
 	svg_text(svg, "name", PX(16), y + PX(16), ANCHOR_START, text_string(&words));

@@ -108,7 +108,8 @@ static const struct standard no_standard = {.name = "none", .fields = 1};
 bool frame_rows_make(struct frame_rows *rows, const struct timeline *timeline, struct arena *arena)
 {
 	const struct recording recording = {.plan = timeline->plan, .asserted = timeline->asserted, .cells = timeline->cell_count};
-	*rows = (struct frame_rows){.timeline = timeline, .pins = timeline_pins(timeline, arena), .widest = widest_line(timeline), .field_count = 1};
+	*rows = (struct frame_rows){.timeline = timeline, .pins = timeline_pins(timeline, arena), .widest = widest_line(timeline),
+	                            .field_count = 1};
 	rows->rows = arena_array(arena, timeline->line_count, sizeof *rows->rows);
 	const struct measurement *measured = measure_recording(arena, &recording, &no_standard);
 	if (rows->pins == NULL || rows->rows == NULL || measured == NULL)

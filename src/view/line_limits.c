@@ -25,18 +25,10 @@ static bool is_drawn(const struct standard *standard, enum limit_grade grade, en
 	return time == NULL || (!time->has_low && !time->has_high);
 }
 
-// The tick at which a cell of the frame begins, seen from the line: of all laps the one in or nearest after the line's start.
-static int64_t tick_in_frame(const struct timeline *timeline, uint32_t cell)
+static int64_t tick_of_cell(const struct timeline *timeline, uint32_t cell)
 {
 	const struct cell_place place = timeline_place(timeline, cell == timeline->cell_count ? 0 : cell);
-	const struct clock *clock = &timeline->plan->clock;
-	const struct frame_line *line = &timeline->lines[place.line];
-	const int stretch = timeline->plan->role_signal[ROLE_STRETCH];
-	int64_t tick = line->first_tick;
-	for (uint32_t index = 0; index < place.cell; index++)
-		tick += clock->cell_ticks +
-		        (stretch >= 0 && (timeline->asserted[line->first_cell + index] >> stretch & 1) != 0 ? clock->stretch_ticks : 0);
-	return tick;
+	return tick_in_frame(timeline, place.line, place.cell);
 }
 
 // Ticks that a value lasts, to the nearest; false if they do not fit.
@@ -100,8 +92,8 @@ static bool make_limit(const struct line_shape *shape, const struct measured_ins
 		return false;
 	limit->has_low = limit->limit->has_low;
 	limit->has_high = limit->limit->has_high;
-	limit->from_tick = tick_in_frame(timeline, instance->from_cell) - start;
-	limit->to_tick = tick_in_frame(timeline, instance->to_cell) - start;
+	limit->from_tick = tick_of_cell(timeline, instance->from_cell) - start;
+	limit->to_tick = tick_of_cell(timeline, instance->to_cell) - start;
 	int64_t *here = limit->at_start ? &limit->from_tick : &limit->to_tick;
 	*here += *here < (limit->at_start ? 0 : 1) ? lap : 0;
 	if (limit->at_start && limit->to_tick <= limit->from_tick)

@@ -18,8 +18,8 @@ bool line_shape_make(struct line_shape *shape, const struct timeline *timeline, 
 	const struct frame_line *in_frame = &timeline->lines[line];
 	const struct clock *clock = &timeline->plan->clock;
 	const uint64_t *pins = timeline_pins(timeline, arena);
-	*shape = (struct line_shape){.timeline = timeline, .plan = timeline->plan, .line = line, .type = &timeline->plan->lines[in_frame->type],
-	                             .laid = &timeline->types[in_frame->type]};
+	*shape = (struct line_shape){.timeline = timeline, .plan = timeline->plan, .line = line,
+	                             .type = &timeline->plan->lines[in_frame->type], .laid = &timeline->types[in_frame->type]};
 	shape->cells = shape->laid->cells;
 	shape->ticks = shape->laid->ticks;
 	shape->asserted = timeline->asserted + in_frame->first_cell;
@@ -102,6 +102,17 @@ struct shape_run shape_stretched_run(const struct line_shape *shape, uint32_t fr
 	return run_between(shape, from, end, 1);
 }
 
+int64_t tick_in_frame(const struct timeline *timeline, uint32_t line, uint32_t cell)
+{
+	const struct frame_line *at = &timeline->lines[line];
+	const struct clock *clock = &timeline->plan->clock;
+	const int stretch = timeline->plan->role_signal[ROLE_STRETCH];
+	int64_t stretched = 0;
+	for (uint32_t index = 0; stretch >= 0 && index < cell; index++)
+		stretched += (timeline->asserted[at->first_cell + index] >> stretch & 1) != 0;
+	return at->first_tick + cell * clock->cell_ticks + stretched * clock->stretch_ticks;
+}
+
 void text_put_ticks_us(struct text *out, const struct clock *clock, int64_t ticks)
 {
 	struct fraction seconds;
@@ -155,7 +166,8 @@ uint32_t picture_line_of_type(const struct timeline *timeline, size_t type)
 	for (uint32_t line = 0; line < count; line++) {
 		if (timeline->lines[line].type != type)
 			continue;
-		if (timeline->lines[line == 0 ? count - 1 : line - 1].type == type && timeline->lines[line + 1 == count ? 0 : line + 1].type == type)
+		const uint32_t before = line == 0 ? count - 1 : line - 1, after = line + 1 == count ? 0 : line + 1;
+		if (timeline->lines[before].type == type && timeline->lines[after].type == type)
 			return line;
 		first = first == UINT32_MAX ? line : first;
 	}

@@ -51,6 +51,9 @@ static inline unsigned shape_level(const struct signal *signal, unsigned asserte
 	return signal->active_high ? asserted : !asserted;
 }
 
+// The tick of the frame at which a cell of a line of it begins; cell may be one past the last. Cannot fail.
+int64_t tick_in_frame(const struct timeline *timeline, uint32_t line, uint32_t cell);
+
 // Puts ticks as microseconds: "4.610". "?" for a time that does not fit.
 void text_put_ticks_us(struct text *out, const struct clock *clock, int64_t ticks);
 // Puts "7 cells, 66 ticks, 4.610 us".
