@@ -9,6 +9,7 @@ const struct command commands[] = {
 	{"check", "read plans or sets, lay out their lines and report, without images", command_check},
 	{"build", "make the images of plans or sets, prove them and write them", command_build},
 	{"prove", "prove images that are there against their plan or set", command_prove},
+	{"draw", "draw a line, the frame, the tables or the colour phase of a plan", command_draw},
 	{"fit", "search line layouts that suit a standard, and write one as a plan", command_fit},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
 	{"schema", "print a JSON Schema of plans, sets, boards or reports", command_schema},
@@ -16,7 +17,7 @@ const struct command commands[] = {
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
-static const char *const later_commands[] = {"diff", "draw", "sheet", "lift", "readback", "probe", "export"};
+static const char *const later_commands[] = {"diff", "sheet", "lift", "readback", "probe", "export"};
 
 static void print_help(FILE *out)
 {
