@@ -9,12 +9,13 @@ const struct command commands[] = {
 	{"check", "read plans or sets, lay out their lines and report, without images", command_check},
 	{"build", "make the images of plans or sets, prove them and write them", command_build},
 	{"prove", "prove images that are there against their plan or set", command_prove},
+	{"lift", "read a plan back out of images", command_lift},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
 };
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
-static const char *const later_commands[] = {"diff",     "draw",  "sheet",  "fit", "lift",
+static const char *const later_commands[] = {"diff",     "draw",  "sheet",  "fit",
                                              "readback", "probe", "export", "schema"};
 
 static void print_help(FILE *out)
