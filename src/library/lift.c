@@ -141,6 +141,17 @@ static bool compare_images(scanlatch_lift *lift, struct reread *reread, scanlatc
 	return good || report_memory(messages);
 }
 
+static void report_refusal(const scanlatch_lift *lift, const struct diagnostics *refusals, scanlatch_messages *messages)
+{
+	const size_t types = lift->lift->type_count;
+	const char *rule = diagnostics_count(refusals) > 0 ? rule_row(diagnostics_rule(refusals, 0))->id : "another timeline";
+	diagnose(messages->diagnostics, RULE_LIFT_SIZE, (struct place){lift->lift->plan->source, 0, 0},
+	         "a plan of these images, of %zu bytes and %zu line type%s, is beyond what the plan language takes: %s", strlen(lift->plan), types,
+	         types == 1 ? "" : "s", rule);
+	if (lift->lift->options.near)
+		diagnose_hint(messages->diagnostics, "without --near the plan is shorter");
+}
+
 // What is written is read again and held against the images.
 static bool verify(scanlatch_lift *lift, scanlatch_messages *messages)
 {
@@ -152,12 +163,7 @@ static bool verify(scanlatch_lift *lift, scanlatch_messages *messages)
 		report_memory(messages);
 	if (good && (reread.timeline == NULL || !lays_out(reread.timeline, lift->lift))) {
 		good = false;
-		diagnose(messages->diagnostics, RULE_LIFT_SIZE, (struct place){lift->lift->plan->source, 0, 0},
-		         "a plan of these images would have %zu bytes and %zu line types, which the plan language does not take%s%s",
-		         strlen(lift->plan), lift->lift->type_count, diagnostics_count(reread.diagnostics) > 0 ? ": " : "",
-		         diagnostics_count(reread.diagnostics) > 0 ? rule_row(diagnostics_rule(reread.diagnostics, 0))->id : "");
-		if (lift->lift->options.near)
-			diagnose_hint(messages->diagnostics, "the states are too irregular to be pinned: without --near the plan is shorter");
+		report_refusal(lift, reread.diagnostics, messages);
 	}
 	good = good && (!lift->lift->options.near || compare_images(lift, &reread, messages));
 	timeline_destroy(reread.timeline);

@@ -141,7 +141,7 @@ static bool order_kinds(struct lifting *lifting)
 static bool run(struct lifting *lifting, const struct image *images)
 {
 	struct lift *lift = lifting->lift;
-	if (!begin(lifting, images) || !lift_walk(lifting) || !lift_find_loops(lifting) || !lift_cut(lifting) || !lift_place(lifting) ||
+	if (!begin(lifting, images) || !lift_walk(lifting) || !lift_cut(lifting) || !lift_find_loops(lifting) || !lift_place(lifting) ||
 	    !lift_divide(lifting) || !lift_name(lifting))
 		return false;
 	if (!(lift->options.near ? lift_pin(lifting) : lift_hold(lifting)))

@@ -31,9 +31,9 @@ static bool report_no_lines(struct lifting *lifting)
 		         cells == 1 ? "" : "s");
 		return false;
 	}
-	diagnose(lifting->diagnostics, RULE_LIFT_RASTER, lifting->place,
-	         "no raster: signal \"%s\" is %s in all %u cell%s of the images' loop", lifting->plan->signals[lifting->cut_signal].name,
-	         cut_asserted(lifting, 0) ? "asserted" : "not asserted", cells, cells == 1 ? "" : "s");
+	diagnose(lifting->diagnostics, RULE_LIFT_RASTER, lifting->place, "no raster: signal \"%s\" is asserted %s in the images' loop of %u cell%s",
+	         lifting->plan->signals[lifting->cut_signal].name, cut_asserted(lifting, 0) ? "everywhere" : "nowhere", cells,
+	         cells == 1 ? "" : "s");
 	diagnose_hint(lifting->diagnostics, "lines are cut at its leading edge; --cut names another signal");
 	return false;
 }

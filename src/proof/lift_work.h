@@ -51,10 +51,10 @@ struct lifting {
 
 // Walks from power-up into the loop and around it: states, signals, ends of lines.
 bool lift_walk(struct lifting *lifting);
-// Looks for other loops.
-bool lift_find_loops(struct lifting *lifting);
 // Cuts the loop into lines, and turns it so that the frame's first cell is cell 0.
 bool lift_cut(struct lifting *lifting);
+// Looks for other loops.
+bool lift_find_loops(struct lifting *lifting);
 // Sorts lines by what they show, into contents; and divides these into regions.
 bool lift_place(struct lifting *lifting);
 bool lift_divide(struct lifting *lifting);

@@ -108,6 +108,8 @@ static void put_machine(struct text *out, const struct lift *lift, const struct 
 		if (loop && strcmp(key, "state") == 0)
 			put_state_keys(out, lift, machine);
 	}
+	if (!loop && node_value(machine, "kind") == NULL) // a plan in a board's place: its lines settled them
+		text_printf(out, "  kind: %u bit%s\n", lift->plan->machine.kind_bits, lift->plan->machine.kind_bits == 1 ? "" : "s");
 	if (!loop)
 		put_state_keys(out, lift, machine);
 }
@@ -141,13 +143,23 @@ static unsigned digits_of(uint32_t value)
 
 // Columns of the regions of a line type.
 struct widths {
-	size_t name, cells, names;
+	size_t name, cells, shown;
 };
 
-static size_t names_length(const struct lift *lift, uint64_t signals)
+// What a region asserts and stretches: "assert: [sync, blank], stretch: 1".
+static void put_shown(struct text *out, const struct lift *lift, const struct lift_region *region)
+{
+	text_put(out, "assert: [");
+	put_names(out, lift, region->asserted);
+	text_put(out, "]");
+	if (region->stretched > 0)
+		text_printf(out, ", stretch: %u", (unsigned)region->stretched);
+}
+
+static size_t shown_length(const struct lift *lift, const struct lift_region *region)
 {
 	struct text text = {0};
-	put_names(&text, lift, signals);
+	put_shown(&text, lift, region);
 	const size_t length = text.length;
 	text_release(&text);
 	return length;
@@ -158,13 +170,13 @@ static struct widths measure(const struct lift *lift, const struct lift_type *ty
 	struct widths widths = {0};
 	for (size_t index = 0; index < type->region_count; index++) {
 		const struct lift_region *region = &type->regions[index];
-		const size_t names = names_length(lift, region->asserted);
+		const size_t shown = shown_length(lift, region);
 		if (strlen(region->name) > widths.name)
 			widths.name = strlen(region->name);
 		if (digits_of(region->cells) > widths.cells)
 			widths.cells = digits_of(region->cells);
-		if ((region->stretched > 0 || region->hold_count > 0) && names > widths.names)
-			widths.names = names;
+		if (region->hold_count > 0 && shown > widths.shown)
+			widths.shown = shown;
 	}
 	return widths;
 }
@@ -181,15 +193,10 @@ static void put_region(struct text *out, const struct lift *lift, const struct l
 	put_padding(out, strlen(region->name), widths->name);
 	text_printf(out, "cells: %u, ", (unsigned)region->cells);
 	put_padding(out, digits_of(region->cells), widths->cells);
-	text_put(out, "assert: [");
-	put_names(out, lift, region->asserted);
-	text_put(out, "]");
-	if (region->stretched > 0)
-		text_printf(out, ", stretch: %u", (unsigned)region->stretched);
+	put_shown(out, lift, region);
 	if (region->hold_count > 0) {
 		text_put(out, ",");
-		if (region->stretched == 0)
-			put_padding(out, names_length(lift, region->asserted), widths->names);
+		put_padding(out, shown_length(lift, region), widths->shown);
 		put_holds(out, region);
 	}
 	text_put(out, " }\n");
