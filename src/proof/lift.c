@@ -4,6 +4,8 @@
 #include "base/diagnostics.h"
 #include "proof/lift_work.h"
 
+#define MOST_LAPS 32 // of a frame: what takes longer to come round was not meant to
+
 bool lift_memory(struct lifting *lifting)
 {
 	diagnose(lifting->diagnostics, RULE_OUT_OF_MEMORY, lifting->place, "memory is out");
@@ -77,7 +79,8 @@ static uint32_t laps_in_phase(const struct lifting *lifting)
 	    !fraction_multiply(cycles, fraction_whole(lifting->lift->tick_count), &cycles) ||
 	    !fraction_multiply(cycles, fraction_whole(clock->phase_count), &laps))
 		return 1;
-	if (laps.denominator > LIMIT_CELLS / lifting->lift->cell_count || laps.denominator > LIMIT_LINES / lifting->lift->line_count)
+	if (laps.denominator > MOST_LAPS || laps.denominator > LIMIT_CELLS / lifting->lift->cell_count ||
+	    laps.denominator > LIMIT_LINES / lifting->lift->line_count)
 		return 1;
 	return (uint32_t)laps.denominator;
 }

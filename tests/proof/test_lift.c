@@ -268,7 +268,7 @@ static void pinned_states(void **test)
 	burn_loop(hand, "--S-.. --S-.. --S-.. --SSSS", 0);
 	assert_lifted(hand, near,
 	              "picture: front porch*2{pinned=6*row + col} sync*1{pinned=2 + 6*row} back porch*1{pinned=3 + 6*row} picture*2{pinned=4 + 6*row + col}; "
-	              "vertical sync: front porch*2{pinned=18 + col} broad sync*4{pinned=20 + col}; | 3 picture 1 vertical sync");
+	              "vertical sync: blank*2{pinned=18 + col} broad sync*4{pinned=20 + col}; | 3 picture 1 vertical sync");
 	by_hand_destroy(hand);
 }
 

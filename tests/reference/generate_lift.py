@@ -53,6 +53,10 @@ class Raster(Generator):
 		super().make_field_signals()
 		list_codes(self.chance, self.tree)
 
+	def make_aligned_count(self):
+		super().make_aligned_count()
+		self.tree["signals"]["sync"]["from"]["codes"] = ["1"]
+
 
 class ListedStages(LineFrame):
 	def make_field_signals(self):

@@ -4,12 +4,15 @@
 	lift_trip.py WORK PLAN …
 
 For each plan a line: "ok PLAN: …", "skipped PLAN: …" (no images could be built of it), "refused PLAN: RULE" (no raster) or "WRONG
-PLAN: …". Timelines are laid out from the texts by oracle_plan.py, which was written from the design pages without a look at the
+PLAN: …"; after "ok", another of the images with a bit flipped, "damaged ok PLAN: …" or "damaged refused PLAN: RULE". Timelines are laid out from the texts by oracle_plan.py, which was written from the design pages without a look at the
 program, and compared cell by cell, asserted signals, pins and ticks, up to where the frame begins and how many laps it has. Plans
-with pinned states must give back the very bytes. The board of every other plan is written without lines and frame.
+with pinned states must give back the very bytes. The prover finds the images, damaged ones too, to keep to the plan that was lifted
+from them: closure and signals. The board of every other plan is written without lines and frame.
 """
 
 import os
+import random
+import re
 import subprocess
 import sys
 
@@ -111,6 +114,44 @@ def lift(board, images, out, *options):
 	return None
 
 
+def keeps_to(lifted, images):
+	"""Whether the prover finds images to follow a plan, in bank 0; whether they come home from elsewhere is not the plan's affair."""
+	done = run("prove", lifted, images)
+	if done.returncode not in (0, 1):
+		raise Wrong(f"prove: status {done.returncode} {done.stderr[-500:]}")
+	failed, follow = False, True
+	for line in done.stdout.splitlines():
+		if not line.startswith(" "):
+			failed = line.startswith(("FAIL  closure", "FAIL  signals"))
+		elif failed and line.startswith("      at line"):
+			follow = follow and bool(re.search(r"bank [1-9]", line))
+	return follow
+
+
+def flip_bit(images, folder, seed):
+	"""The images with one bit flipped, in a folder."""
+	chance = random.Random(seed)
+	name = chance.choice(sorted(images))
+	os.makedirs(folder)
+	for other, image in images.items():
+		damaged = bytearray(image)
+		if other == name:
+			damaged[chance.randrange(len(image))] ^= 1 << chance.randrange(8)
+		with open(os.path.join(folder, other), "wb") as file:
+			file.write(damaged)
+
+
+def damaged_trip(path, board, images, work, options):
+	folder, lifted = os.path.join(work, "damaged"), os.path.join(work, "damaged.yaml")
+	flip_bit(images, folder, path)
+	refusal = lift(board, folder, lifted, *options)
+	if refusal:
+		return f"damaged refused {path}: {refusal}"
+	if "# The images number the frame's lines otherwise" not in read(lifted) and not keeps_to(lifted, folder):
+		raise Wrong("damaged images do not keep to the plan that was lifted from them")
+	return f"damaged ok {path}"
+
+
 def trip(path, work, number):
 	try:
 		plan = Plan(read(path))
@@ -131,13 +172,16 @@ def trip(path, work, number):
 		raise Wrong(f"the lifted plan is not built: {why}")
 	if not same_round(cells_of(plan), cells_of(Plan(read(lifted)))):
 		raise Wrong("the lifted plan lays out another timeline")
+	if not keeps_to(lifted, first):
+		raise Wrong("the images do not keep to the lifted plan")
 	lift(board, first, pinned, "--near", *options)
 	if not same_round(cells_of(plan), cells_of(Plan(read(pinned)))):
 		raise Wrong("the plan with pinned states lays out another timeline")
 	near, why = build(pinned, os.path.join(work, "near"))
 	if near != images:
 		raise Wrong(f"the plan with pinned states gives back other bytes {why}")
-	return f"ok {path}: {len(plan.places)} cells, {'held' if 'hold:' in read(lifted) else 'free'}"
+	cells, held = len(plan.places), "held" if "hold:" in read(lifted) else "free"
+	return f"ok {path}: {cells} cells, {held}\n{damaged_trip(path, board, images, work, options)}"
 
 
 def main(arguments):
