@@ -96,6 +96,9 @@ static void put_run(const struct chip_view *view, const struct run *run)
 	}
 	if (view->carries_kind)
 		text_printf(out, "  kind %u", (unsigned)run->word.kind);
+	const bool says_nothing = !view->carries_next && !view->carries_kind && !run->word.step && !run->word.clear && run->word.signals == 0 &&
+	                          run->word.open == 0;
+	text_put(out, says_nothing ? "  -" : "");
 	text_put(out, run->word.step ? "  step" : "");
 	text_put(out, run->word.clear ? "  clear" : "");
 	for (size_t signal = 0; signal < view->plan->signal_count; signal++)
@@ -161,12 +164,23 @@ static void put_part(const struct chip_view *view, uint32_t rest)
 	put_run(view, &run);
 }
 
+static void put_data_pin(const struct chip_view *view, struct data_wire wire)
+{
+	static const char *const words[] = {[DATA_OPEN] = "-",       [DATA_NEXT] = "next",   [DATA_KIND] = "kind",
+	                                    [DATA_STEP] = "step", [DATA_CLEAR] = "clear", [DATA_SIGNAL] = NULL};
+	const char *word = wire.kind == DATA_SIGNAL ? view->plan->signals[wire.index].name : words[wire.kind];
+	text_printf(view->out, wire.kind == DATA_NEXT || wire.kind == DATA_KIND ? " %s.%u" : " %s", word, wire.index);
+}
+
 static void put_head(const struct chip_view *view)
 {
 	text_printf(view->out, "%s: chip %s, %s", view->plan->name, view->chip->label, view->chip->part->name);
 	if (view->plan->machine.form == FORM_LINE_FRAME)
 		text_printf(view->out, ", %s stage", stage_name(view->chip->stage));
-	text_put(view->out, "\nstate  what its row says\n");
+	text_put(view->out, "\ndata pins:");
+	for (unsigned pin = 0; pin < view->chip->part->data_pins; pin++)
+		put_data_pin(view, view->chip->data[pin]);
+	text_put(view->out, "\nstate, and what its row says in them:\n");
 }
 
 void view_chip_rows(struct text *out, const struct plan *board, size_t chip, const struct image *image)
