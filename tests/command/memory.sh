@@ -62,4 +62,5 @@ fi
 refused_below check check "$plan"
 refused_below build build "$plan" --listing -o "$work/out"
 refused_below prove prove --json "$plan" "$work/images"
+refused_below lift lift --near "$plan" "$work/images" -o "$work/out/lifted.yaml"
 finish
