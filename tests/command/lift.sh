@@ -114,6 +114,32 @@ holds 'its other bank: said' grep -qx '# Bank 1 of the jumpers.' "$work/out"
 ends 'a bank that there is not' 2 --bank 2 plans/pilot-station.yaml "$work/set"
 holds 'a bank that there is not: how many' grep -q 'bank: wanted 0 to 1, as the chips have 1 bank bit, found 2' "$work/err"
 
+# ---- a frame of several laps: 15 ticks a lap are 15/4 cycles
+
+cat >"$work/laps.yaml" <<'PLAN'
+scanlatch: 1
+name: laps
+clock: { master: 8 MHz, cell: 1 tick, subcarrier: master / 4, phase: every frame }
+signals:
+  sync: { role: composite sync, active: low }
+  lamp: { role: plain, active: high }
+lines:
+  quay: { regions: [ { region: sync, cells: 1, assert: [sync] }, { region: rest, cells: 4 } ] }
+  pier: { regions: [ { region: sync, cells: 1, assert: [sync] }, { region: rest, cells: 4, assert: [lamp] } ] }
+frame: [ { repeat: 2, line: quay }, { repeat: 1, line: pier }, { repeat: 2, line: quay }, { repeat: 1, line: pier },
+         { repeat: 2, line: quay }, { repeat: 1, line: pier }, { repeat: 2, line: quay }, { repeat: 1, line: pier } ]
+machine: { form: loop, state: 5 bits }
+chips: { part: 28C16 }
+PLAN
+"$SCANLATCH" build "$work/laps.yaml" -o "$work/laps" --format bin >"$work/built" || fail 'laps are built'
+for option in --bank=0 --near; do
+	ends "laps, $option" 0 "$option" "$work/laps.yaml" "$work/laps" -o "$work/lapped.yaml"
+	same "laps, $option: the loop" '15' "$(sed -n 's/^loop: .* \([0-9]*\) cells.*/\1/p' "$work/out")"
+	same "laps, $option: four times two blocks" 8 "$(grep -c 'repeat:' "$work/lapped.yaml")"
+	holds "laps, $option: colour is kept" "$SCANLATCH" build "$work/lapped.yaml" -o "$work/lapped" --format bin
+done
+holds 'laps: the same bytes' cmp "$work/laps/laps.rom0.bin" "$work/lapped/laps.rom0.bin"
+
 # ---- bad input
 
 ends 'no images' 2 "$plan"
