@@ -28,23 +28,15 @@ static bool is_plain(const char *value, bool flow)
 	return true;
 }
 
-// Characters that YAML takes for line breaks, and the mark of byte order, by their escapes (YAML 1.1, section 5.6).
-static size_t put_special(struct text *out, const char *bytes)
+// What stands escaped between double quotes. (No document holds other control characters, or line breaks of Unicode's own.)
+static void put_quoted(struct text *out, char byte)
 {
-	static const struct {
-		const char *bytes, *escape;
-	} specials[] = {{"\xC2\x85", "\\N"}, {"\xE2\x80\xA8", "\\L"}, {"\xE2\x80\xA9", "\\P"}, {"\xEF\xBB\xBF", "\\uFEFF"},
-	                {"\n", "\\n"},       {"\r", "\\r"},           {"\t", "\\t"},           {"\"", "\\\""},
-	                {"\\", "\\\\"}};
-	for (size_t index = 0; index < sizeof specials / sizeof *specials; index++) {
-		const size_t length = strlen(specials[index].bytes);
-		if (strncmp(bytes, specials[index].bytes, length) == 0) {
-			text_put(out, specials[index].escape);
-			return length;
-		}
-	}
-	text_put_bytes(out, bytes, 1);
-	return 1;
+	if (byte == '\n')
+		text_put(out, "\\n");
+	else if (byte == '\t')
+		text_put(out, "\\t");
+	else
+		text_printf(out, byte == '"' || byte == '\\' ? "\\%c" : "%c", byte);
 }
 
 void text_put_scalar(struct text *out, const char *value, bool flow)
@@ -54,8 +46,8 @@ void text_put_scalar(struct text *out, const char *value, bool flow)
 		return;
 	}
 	text_put(out, "\"");
-	while (*value != '\0')
-		value += put_special(out, value);
+	for (; *value != '\0'; value++)
+		put_quoted(out, *value);
 	text_put(out, "\"");
 }
 
