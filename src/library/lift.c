@@ -72,7 +72,8 @@ static void reread_plan(struct reread *reread, const scanlatch_lift *lift)
 	const struct catalogue *catalogue = catalogue_load(reread->arena, reread->diagnostics);
 	reread->source = (struct source){"the lifted plan", lift->plan, strlen(lift->plan)};
 	if (catalogue != NULL && board->set != NULL)
-		reread->plan = plan_read_for_set(&reread->source, catalogue, board->set->set, set_bank_shown(board->set->set, bank), reread->diagnostics);
+		reread->plan = plan_read_for_set(&reread->source, catalogue, board->set->set, set_bank_shown(board->set->set, bank),
+		                                 reread->diagnostics);
 	else if (catalogue != NULL)
 		reread->plan = plan_read(&reread->source, catalogue, reread->diagnostics);
 	if (reread->plan != NULL)
@@ -101,7 +102,8 @@ static bool is_of_bank(const struct chip *chip, size_t offset, unsigned bank)
 	return true;
 }
 
-static size_t count_differing(const struct chip *chip, const struct image *left, const struct image *right, unsigned bank, size_t *first)
+static size_t count_differing(const struct chip *chip, const struct image *left, const struct image *right, unsigned bank,
+                              size_t *first)
 {
 	size_t count = 0;
 	for (size_t offset = 0; offset < left->length; offset++) {
@@ -113,7 +115,8 @@ static size_t count_differing(const struct chip *chip, const struct image *left,
 	return count;
 }
 
-// Compares the images that a plan with pinned states gives with those that it was lifted from. False after reporting that memory is out.
+// Compares the images that a plan with pinned states gives with those that it was lifted from. False after reporting that memory
+// is out.
 static bool compare_images(scanlatch_lift *lift, struct reread *reread, scanlatch_messages *messages)
 {
 	const struct plan *plan = lift->lift->plan;
@@ -128,7 +131,8 @@ static bool compare_images(scanlatch_lift *lift, struct reread *reread, scanlatc
 	}
 	for (size_t chip = 0; good && table != NULL && chip < plan->chip_count; chip++) {
 		size_t first = 0;
-		const size_t count = count_differing(&plan->chips[chip], &made[chip], &lift->images->images[chip], lift->lift->options.bank, &first);
+		const size_t count =
+			count_differing(&plan->chips[chip], &made[chip], &lift->images->images[chip], lift->lift->options.bank, &first);
 		if (count == 0)
 			continue;
 		diagnose(messages->diagnostics, RULE_LIFT_NEAR, (struct place){lift->images->sources[chip], 0, 0},
@@ -146,8 +150,8 @@ static void report_refusal(const scanlatch_lift *lift, const struct diagnostics 
 	const size_t types = lift->lift->type_count;
 	const char *rule = diagnostics_count(refusals) > 0 ? rule_row(diagnostics_rule(refusals, 0))->id : "another timeline";
 	diagnose(messages->diagnostics, RULE_LIFT_SIZE, (struct place){lift->lift->plan->source, 0, 0},
-	         "a plan of these images, of %zu bytes and %zu line type%s, is beyond what the plan language takes: %s", strlen(lift->plan), types,
-	         types == 1 ? "" : "s", rule);
+	         "a plan of these images, of %zu bytes and %zu line type%s, is beyond what the plan language takes: %s", strlen(lift->plan),
+	         types, types == 1 ? "" : "s", rule);
 	if (lift->lift->options.near)
 		diagnose_hint(messages->diagnostics, "without --near the plan is shorter");
 }
@@ -184,7 +188,8 @@ static bool find_cut(const struct plan *plan, const char *name, size_t *signal, 
 	struct text names = {0};
 	for (size_t index = 0; index < plan->signal_count; index++)
 		text_printf(&names, "%s%s", index > 0 ? ", " : "", plan->signals[index].name);
-	diagnose(messages->diagnostics, RULE_UNKNOWN_SIGNAL, (struct place){plan->source, 0, 0}, "the board has no signal \"%s\" to cut lines at", name);
+	diagnose(messages->diagnostics, RULE_UNKNOWN_SIGNAL, (struct place){plan->source, 0, 0}, "the board has no signal \"%s\" to cut lines at",
+	         name);
 	diagnose_hint(messages->diagnostics, "its signals are %s", text_string(&names));
 	text_release(&names);
 	return false;

@@ -99,43 +99,47 @@ static void find_start(struct lifting *lifting)
 		lift->has_start = false;
 }
 
-// The kinds of the images are the places of line types; kinds that the frame does not use keep theirs by types that no line is of.
+// The type at a kind's place: the one of that kind, or one that no line is of.
+static bool place_type(struct lift *lift, struct lift_type *place, const struct lift_type *type, uint32_t kind)
+{
+	struct lift_region *whole = type == NULL ? arena_array(lift->arena, 1, sizeof *whole) : NULL;
+	if (type != NULL) {
+		*place = *type;
+		return true;
+	}
+	*place = (struct lift_type){.name = arena_format(lift->arena, "unused %u", (unsigned)kind), .cells = 2, .regions = whole,
+	                            .region_count = 1};
+	if (whole != NULL)
+		*whole = (struct lift_region){.name = "unused", .cells = 2};
+	return whole != NULL && place->name != NULL;
+}
+
+// Orders line types by the kinds that the images have for them. Kinds that the frame does not use keep their places if states are pinned;
+// otherwise, and where lines of one kind differ, kinds are given out anew.
 static bool order_kinds(struct lifting *lifting)
 {
 	struct lift *lift = lifting->lift;
-	uint32_t kinds = 0, used = 0;
+	uint32_t kinds = 0;
 	uint32_t *type_of_kind = arena_array(lifting->arena, (size_t)1 << lifting->wiring.kind_bits, sizeof *type_of_kind);
-	uint32_t *kind_of_type = arena_array(lifting->arena, lift->type_count, sizeof *kind_of_type);
-	if (type_of_kind == NULL || kind_of_type == NULL)
+	if (type_of_kind == NULL)
 		return lift_memory(lifting);
 	for (uint32_t type = 0; type < lift->type_count; type++) {
 		const uint32_t kind = lifting->contents[lift->types[type].content].kind;
 		if (type_of_kind[kind] != 0)
-			return true; // two line types of one kind: kinds are given out anew
+			return true;
 		type_of_kind[kind] = type + 1;
-		kind_of_type[type] = kind;
 		kinds = kind + 1 > kinds ? kind + 1 : kinds;
-		used++;
 	}
-	if (used < kinds && !lift->options.near)
+	if (lift->type_count < kinds && !lift->options.near)
 		return true;
 	struct lift_type *ordered = arena_array(lift->arena, kinds, sizeof *ordered);
-	struct lift_region *whole = arena_array(lift->arena, 1, sizeof *whole);
-	if (ordered == NULL || whole == NULL)
-		return lift_memory(lifting);
-	*whole = (struct lift_region){.name = "unused", .cells = 2};
-	for (uint32_t kind = 0; kind < kinds; kind++) {
-		if (type_of_kind[kind] != 0) {
-			ordered[kind] = lift->types[type_of_kind[kind] - 1];
-			continue;
-		}
-		ordered[kind] = (struct lift_type){.name = arena_format(lift->arena, "unused %u", (unsigned)kind), .cells = 2, .regions = whole,
-		                                   .region_count = 1};
-		if (ordered[kind].name == NULL)
+	for (uint32_t kind = 0; ordered != NULL && kind < kinds; kind++)
+		if (!place_type(lift, &ordered[kind], type_of_kind[kind] == 0 ? NULL : &lift->types[type_of_kind[kind] - 1], kind))
 			return lift_memory(lifting);
-	}
+	if (ordered == NULL)
+		return lift_memory(lifting);
 	for (size_t block = 0; block < lift->block_count; block++)
-		lift->blocks[block].type = kind_of_type[lift->blocks[block].type];
+		lift->blocks[block].type = lifting->contents[lift->types[lift->blocks[block].type].content].kind;
 	lift->types = ordered;
 	lift->type_count = kinds;
 	return true;

@@ -89,8 +89,8 @@ struct lift {
 	uint64_t lost_states;          // that lead into them
 };
 
-// Lifts a plan from images, all of them there, of the board's chips. NULL after reporting: the loop is too long or no raster, or memory is
-// out. Freed with lift_destroy; the board and the diagnostics' sources must outlive it. Time is linear in the loop's cells (for each
+// Lifts a plan from images, all of them there, of the board's chips. NULL after reporting: the loop is too long or no raster, or
+// memory is out. Freed with lift_destroy; the board and the diagnostics' sources must outlive it. Time is linear in the loop's cells (for each
 // bit of the state, where the board names no fields) and in the machine's states.
 struct lift *lift_images(const struct plan *board, const struct image *images, struct lift_options options,
                          struct diagnostics *diagnostics);

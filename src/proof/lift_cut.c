@@ -31,8 +31,8 @@ static bool report_no_lines(struct lifting *lifting)
 		         cells == 1 ? "" : "s");
 		return false;
 	}
-	diagnose(lifting->diagnostics, RULE_LIFT_RASTER, lifting->place, "no raster: signal \"%s\" is asserted %s in the images' loop of %u cell%s",
-	         lifting->plan->signals[lifting->cut_signal].name, cut_asserted(lifting, 0) ? "everywhere" : "nowhere", cells,
+	diagnose(lifting->diagnostics, RULE_LIFT_RASTER, lifting->place,
+	         "no raster: signal \"%s\" is asserted %s in the images' loop of %u cell%s", lifting->plan->signals[lifting->cut_signal].name, cut_asserted(lifting, 0) ? "everywhere" : "nowhere", cells,
 	         cells == 1 ? "" : "s");
 	diagnose_hint(lifting->diagnostics, "lines are cut at its leading edge; --cut names another signal");
 	return false;
@@ -193,8 +193,8 @@ static bool check_raster(struct lifting *lifting)
 	if (lifting->ends != NULL || is_regular(cells, lift->cell_count) || is_regular(ticks, (uint64_t)lift->tick_count))
 		return true;
 	diagnose(lifting->diagnostics, RULE_LIFT_RASTER, lifting->place,
-	         "no raster: cut at \"%s\", the images' loop of %u cells has %u lines of %u to %u cells; the commonest length, %u cells, and its "
-	         "halves take less than half of the time", lifting->plan->signals[lifting->cut_signal].name, lift->cell_count,
+	         "no raster: cut at \"%s\", the images' loop of %u cells has %u lines of %u to %u cells; the commonest length, %u cells, "
+	         "and its halves take less than half of the time", lifting->plan->signals[lifting->cut_signal].name, lift->cell_count,
 	         lift->line_count, shortest, longest, lifting->normal_cells);
 	diagnose_hint(lifting->diagnostics, "are these the board's images, and its wires? --cut names another signal to cut lines at");
 	return false;
@@ -235,8 +235,8 @@ static uint32_t first_after_sync(const struct lifting *lifting)
 	return best;
 }
 
-// Where the state leads from which spare rows go home: the first cell of the frame as it was planned. Cells of the loop are told by their
-// states. NO_INDEX if there are no spare rows; those that do not agree are outvoted.
+// Where spare rows go home: the first cell of the frame as it was planned. NO_INDEX if there are no spare rows; those that do not
+// agree are outvoted.
 static bool find_home(struct lifting *lifting, uint32_t *home)
 {
 	const struct lift *lift = lifting->lift;
@@ -260,7 +260,7 @@ static bool find_home(struct lifting *lifting, uint32_t *home)
 	return true;
 }
 
-// A counter begins at 0; so does the frame stage, if it counts the lines up from there. A plan that pins states begins where spare rows lead.
+// The frame of a counter begins at 0, that of a plan which pins states where spare rows lead.
 static bool fix_home(struct lifting *lifting)
 {
 	const struct lift *lift = lifting->lift;
@@ -366,8 +366,8 @@ static bool find_phase(struct lifting *lifting, uint32_t *line)
 	return true;
 }
 
-// On some boards vertical sync begins elsewhere in a line than sync does. Then lines of equal length are the shorter description: they are taken
-// if they save a quarter.
+// On some boards vertical sync begins elsewhere in a line than sync does. Then lines of equal length are the shorter description: they
+// are taken if they save a quarter.
 static bool try_equal_lines(struct lifting *lifting)
 {
 	struct lift *lift = lifting->lift;

@@ -34,7 +34,7 @@ static bool take_line(const struct lifting *lifting, struct grid *grid, uint32_t
 	return true;
 }
 
-// In how many parts a field's values over a block have expressions, as long ones as can be; 0 if they have none, or more than `most` of them.
+// In how many parts a field's values over a block have expressions, as long ones as can be; 0 if they have none, or too many parts.
 // Cuts between parts are marked in cuts[], if it is not NULL.
 static uint32_t count_parts(const struct lifting *lifting, const struct held_lines *block, const struct lift_region *region,
                             const struct lift_field *field, bool by_modulus, uint8_t *cuts)
@@ -57,7 +57,8 @@ static uint32_t count_parts(const struct lifting *lifting, const struct held_lin
 }
 
 // Marks where a regular field wants the block cut.
-static void mark_cuts(const struct lifting *lifting, struct held_lines *block, const struct lift_region *region, const struct lift_field *field)
+static void mark_cuts(const struct lifting *lifting, struct held_lines *block, const struct lift_region *region,
+                      const struct lift_field *field)
 {
 	const uint32_t exact = count_parts(lifting, block, region, field, false, NULL);
 	const uint32_t modular = exact == 1 ? 0 : count_parts(lifting, block, region, field, true, NULL);
@@ -86,8 +87,8 @@ static bool find_expression(struct lifting *lifting, const struct held_lines *bl
 	return true;
 }
 
-static bool hold_region(struct lifting *lifting, const struct held_lines *block, struct lift_region *region, const struct lift_field *fields,
-                        size_t count)
+static bool hold_region(struct lifting *lifting, const struct held_lines *block, struct lift_region *region,
+                        const struct lift_field *fields, size_t count)
 {
 	region->holds = arena_array(lifting->lift->arena, count, sizeof *region->holds);
 	if (region->holds == NULL)

@@ -167,8 +167,8 @@ static bool pin_run_of_lines(struct lifting *lifting, uint32_t first, uint32_t e
 	return true;
 }
 
-// Whether a plan's states might be others than the images', were they not pinned: not those of counters, nor those of a line stage that just
-// numbers the cells.
+// Whether a plan's states might be others than the images', were they not pinned: not those of counters, nor those of a line stage
+// that just numbers the cells.
 static bool has_choice(const struct lifting *lifting)
 {
 	if (lifting->wiring.line.advance == ADVANCE_COUNT)

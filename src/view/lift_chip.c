@@ -96,8 +96,8 @@ static void put_run(const struct chip_view *view, const struct run *run)
 	}
 	if (view->carries_kind)
 		text_printf(out, "  kind %u", (unsigned)run->word.kind);
-	const bool says_nothing = !view->carries_next && !view->carries_kind && !run->word.step && !run->word.clear && run->word.signals == 0 &&
-	                          run->word.open == 0;
+	const bool says_nothing = !view->carries_next && !view->carries_kind && !run->word.step && !run->word.clear &&
+	                          run->word.signals == 0 && run->word.open == 0;
 	text_put(out, says_nothing ? "  -" : "");
 	text_put(out, run->word.step ? "  step" : "");
 	text_put(out, run->word.clear ? "  clear" : "");

@@ -10,7 +10,8 @@ static void put_sources(struct text *out, const struct lift *lift, const struct 
 	const struct plan *plan = lift->plan;
 	text_printf(out, "# Lifted out of images against the board %s. CRC-32 of each chip's bytes:\n", sources->board);
 	for (size_t chip = 0; chip < plan->chip_count; chip++)
-		text_printf(out, "#   %s  %08X  %s\n", plan->chips[chip].label, (unsigned)image_crc32(&sources->images[chip]), sources->files[chip]);
+		text_printf(out, "#   %s  %08X  %s\n", plan->chips[chip].label, (unsigned)image_crc32(&sources->images[chip]),
+		            sources->files[chip]);
 	if (plan->bank_bits > 0)
 		text_printf(out, "# Bank %u of the jumpers.\n", (unsigned)lift->options.bank);
 }
@@ -39,7 +40,8 @@ static void put_remarks(struct text *out, const struct lift *lift)
 		text_put(out, " Holds pin the state of every cell, so that a\n# build gives back the same rows.");
 	text_put(out, "\n");
 	if (lift->copies > 1)
-		text_printf(out, "# The frame is %u laps of the images' loop: after so many the subcarrier is where it was.\n", (unsigned)lift->copies);
+		text_printf(out, "# The frame is %u laps of the images' loop: after so many the subcarrier is where it was.\n",
+		            (unsigned)lift->copies);
 	if (lift->has_start && machine->has_start && lift->start != machine->start) {
 		put_board_start(out, lift);
 	}

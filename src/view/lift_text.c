@@ -66,7 +66,8 @@ void view_lift_text(struct text *out, const struct lift *lift)
 	put_loop(out, lift);
 	text_put(out, "frame:");
 	for (size_t block = 0; block < lift->block_count; block++)
-		text_printf(out, "%s %u %s", block > 0 ? "," : "", (unsigned)lift->blocks[block].repeat, lift->types[lift->blocks[block].type].name);
+		text_printf(out, "%s %u %s", block > 0 ? "," : "", (unsigned)lift->blocks[block].repeat,
+		            lift->types[lift->blocks[block].type].name);
 	if (lift->copies > 1)
 		text_printf(out, "; %u laps of that", (unsigned)lift->copies);
 	text_put(out, "\n");
