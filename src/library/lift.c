@@ -115,21 +115,30 @@ static size_t count_differing(const struct chip *chip, const struct image *left,
 	return count;
 }
 
-// Compares the images that a plan with pinned states gives with those that it was lifted from. False after reporting that memory
-// is out.
+// Of images that no plan gives, such as those of two stages whose lines begin in different states.
+static void report_unbuilt(scanlatch_lift *lift, const struct diagnostics *refusals, scanlatch_messages *messages)
+{
+	size_t index = 0;
+	while (index + 1 < diagnostics_count(refusals) && rule_row(diagnostics_rule(refusals, index))->severity != SEVERITY_ERROR)
+		index++;
+	diagnose(messages->diagnostics, RULE_LIFT_NEAR, (struct place){lift->lift->plan->source, 0, 0},
+	         "the plan lays out the images' lines, but cannot be built as it stands: %s", rule_row(diagnostics_rule(refusals, index))->id);
+	diagnose_hint(messages->diagnostics, "no plan gives images like these; build it to see why");
+	lift->found = true;
+}
+
+// Builds the plan again and, where states are pinned, compares its images with those that it was lifted from. False after reporting that
+// memory is out.
 static bool compare_images(scanlatch_lift *lift, struct reread *reread, scanlatch_messages *messages)
 {
 	const struct plan *plan = lift->lift->plan;
 	struct table *table = table_create(reread->timeline, reread->diagnostics);
 	struct image *made = arena_array(reread->arena, plan->chip_count, sizeof *made);
-	const struct place place = {plan->source, 0, 0};
 	const struct table *tables[1] = {table};
 	bool good = made != NULL && (table == NULL || images_fill(tables, 1, reread->arena, made));
-	if (good && table == NULL) {
-		diagnose(messages->diagnostics, RULE_LIFT_NEAR, place, "the plan pins the images' states, but the planner cannot build it");
-		lift->found = true;
-	}
-	for (size_t chip = 0; good && table != NULL && chip < plan->chip_count; chip++) {
+	if (good && table == NULL)
+		report_unbuilt(lift, reread->diagnostics, messages);
+	for (size_t chip = 0; good && table != NULL && lift->lift->options.near && chip < plan->chip_count; chip++) {
 		size_t first = 0;
 		const size_t count =
 			count_differing(&plan->chips[chip], &made[chip], &lift->images->images[chip], lift->lift->options.bank, &first);
@@ -169,7 +178,9 @@ static bool verify(scanlatch_lift *lift, scanlatch_messages *messages)
 		good = false;
 		report_refusal(lift, reread.diagnostics, messages);
 	}
-	good = good && (!lift->lift->options.near || compare_images(lift, &reread, messages));
+	// A loop that was lifted freely has states: those of the images. To find others may take long.
+	if (good && (lift->lift->options.near || lift->lift->plan->machine.form == FORM_LINE_FRAME))
+		good = compare_images(lift, &reread, messages);
 	timeline_destroy(reread.timeline);
 	plan_destroy(reread.plan);
 	diagnostics_destroy(reread.diagnostics);

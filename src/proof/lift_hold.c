@@ -140,7 +140,7 @@ static bool hold_run(struct lifting *lifting, struct held_lines block, const str
 	return true;
 }
 
-// Whether bits have expressions wherever picture is shown, and vary.
+// Whether bits have expressions wherever picture is shown, and somewhere for more than one cell.
 static bool is_regular(const struct lifting *lifting, const struct lift_field *field)
 {
 	bool any = false;
@@ -152,7 +152,7 @@ static bool is_regular(const struct lifting *lifting, const struct lift_field *f
 			const struct lift_region *region = &content->regions[index];
 			if (region->class != CLASS_PICTURE)
 				continue;
-			any = true;
+			any = any || region->cells > 1 || (lifting->ends == NULL && lines > 1);
 			if (count_parts(lifting, &block, region, field, false, NULL) == 0 && count_parts(lifting, &block, region, field, true, NULL) == 0)
 				return false;
 		}
