@@ -186,6 +186,39 @@ char *scanlatch_draw_frame(const scanlatch_plan *plan, unsigned bank, bool inter
 char *scanlatch_draw_table(const scanlatch_images *images, unsigned bank, scanlatch_messages *messages);
 /* The phase of the subcarrier at the start of each line. */
 char *scanlatch_draw_phase(const scanlatch_plan *plan, unsigned bank, scanlatch_messages *messages);
+/* ---- Lifting: a plan read back out of images ---- */
+
+/* Reads a board from a file ("-" is standard input): a plan without lines and frame. A plan is taken too, its lines and frame are passed over; so
+ * is a set, whole. The result is for images that are read, and for lifting: what wants a plan's lines gives NULL, as if memory were
+ * out. NULL after adding at least one error to messages, which keep the text and must outlive the board. */
+scanlatch_plan *scanlatch_board_read_file(const char *path, scanlatch_messages *messages);
+
+typedef struct scanlatch_lift scanlatch_lift;
+
+struct scanlatch_lift_options {
+	const char *cut;    /* name of the signal at whose leading edge lines are cut; NULL: the board's composite or horizontal sync */
+	bool near;          /* pin the state of every cell */
+	unsigned bank;      /* setting of the jumpers */
+};
+
+/* Lifts a plan from images that are complete; both must outlive the result. What it lays out is compared with the images' loop, and with `near`
+ * its images with theirs. NULL after adding an error: the images go through no raster, or memory is out. */
+scanlatch_lift *scanlatch_lift_images(const scanlatch_images *images, const struct scanlatch_lift_options *options,
+                                      scanlatch_messages *messages);
+void scanlatch_lift_destroy(scanlatch_lift *lift);
+
+/* True if the images have other loops too or, with `near`, rows that the plan does not give back; the messages say more. Cannot fail. */
+bool scanlatch_lift_found(const scanlatch_lift *lift);
+
+/* The plan. Owned by the lift. Cannot fail. */
+const char *scanlatch_lift_plan(const scanlatch_lift *lift);
+/* What was found, as text and as JSON (its shape: src/view/lift.h). NULL when memory is out. */
+char *scanlatch_lift_text(const scanlatch_lift *lift);
+char *scanlatch_lift_json(const scanlatch_lift *lift);
+
+/* The image of a chip in words, a line for each run of addresses whose rows follow each other alike. NULL when memory is out. The image
+ * must have been read. */
+char *scanlatch_images_chip_text(const scanlatch_images *images, size_t chip);
 
 /* ---- Catalogues ---- */
 

@@ -11,13 +11,14 @@ const struct command commands[] = {
 	{"prove", "prove images that are there against their plan or set", command_prove},
 	{"draw", "draw a line, the frame, the tables or the colour phase of a plan", command_draw},
 	{"fit", "search line layouts that suit a standard, and write one as a plan", command_fit},
+	{"lift", "read a plan back out of images", command_lift},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
 	{"schema", "print a JSON Schema of plans, sets, boards or reports", command_schema},
 };
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
-static const char *const later_commands[] = {"diff", "sheet", "lift", "readback", "probe", "export"};
+static const char *const later_commands[] = {"diff", "sheet", "readback", "probe", "export"};
 
 static void print_help(FILE *out)
 {

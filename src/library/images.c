@@ -61,6 +61,8 @@ static bool create_tables(scanlatch_images *images, struct diagnostics *diagnost
 {
 	bool good = true;
 	for (size_t index = 0; index < images->plan->member_count; index++) {
+		if (images->plan->members[index].timeline == NULL)
+			return false;
 		images->members[index].table = table_create(images->plan->members[index].timeline, diagnostics);
 		good = good && images->members[index].table != NULL;
 	}

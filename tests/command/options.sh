@@ -48,10 +48,10 @@ is_json() {
 ends 'no command' 2
 same 'no command: help on standard error' 'Usage: scanlatch COMMAND [options] ARGUMENTS' "$(head -n 1 stderr)"
 same 'no command: nothing on standard output' '' "$stdout"
-refuses 'unknown command' 'scanlatch: there is no command "frobnicate"; the commands are check, build, prove, draw, fit, list, schema' \
+refuses 'unknown command' 'scanlatch: there is no command "frobnicate"; the commands are check, build, prove, draw, fit, lift, list, schema' \
 	frobnicate good.yaml
 refuses 'option before a command' 'scanlatch: unknown option "--json" before a command' --json check good.yaml
-for command in diff sheet lift readback probe export; do
+for command in diff sheet readback probe export; do
 	ends "later command $command" 2 $command good.yaml
 	same "later command $command: says so" "scanlatch: the command \"$command\" is not carried out by this version yet" \
 		"$stderr"
