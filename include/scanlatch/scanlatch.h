@@ -132,6 +132,24 @@ char *scanlatch_proofs_json(const scanlatch_proofs *proofs);
 enum { SCANLATCH_FILE_BIN = 1, SCANLATCH_FILE_HEX = 2 };
 char *scanlatch_manifest(const scanlatch_proofs *proofs, unsigned files);
 
+/* ---- Differences ---- */
+
+typedef struct scanlatch_difference scanlatch_difference;
+
+/* Compares two plans (or sets) by meaning, and the images that were proved against them byte by byte. With both proofs of one plan only the images
+ * are compared. The names are what reports call the two, their last parts. NULL when memory is out. The proofs, with what they are of, must outlive
+ * the difference. */
+scanlatch_difference *scanlatch_compare(const char *old_name, const scanlatch_proofs *old, const char *new_name, const scanlatch_proofs *now);
+void scanlatch_difference_destroy(scanlatch_difference *difference);
+
+/* True if anything changed but names, notes, and how the same cells are divided into regions. Cannot fail. */
+bool scanlatch_difference_found(const scanlatch_difference *difference);
+
+/* The report for a terminal, as Markdown for a review, as JSON (shape: src/view/diff.h). NULL when memory is out. */
+char *scanlatch_difference_text(const scanlatch_difference *difference);
+char *scanlatch_difference_markdown(const scanlatch_difference *difference);
+char *scanlatch_difference_json(const scanlatch_difference *difference);
+
 /* ---- Catalogues ---- */
 
 /* The catalogues of parts, of standards and of crystals as text or JSON (shapes: src/view/parts.h, standards.h, crystals.h).

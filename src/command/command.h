@@ -36,11 +36,13 @@ extern const size_t command_count;
 
 int command_build(int argument_count, char **arguments);
 int command_check(int argument_count, char **arguments);
+int command_diff(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
 
 // Long options without a short one: values above any character.
-enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING };
+enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING, OPTION_GIT,
+       OPTION_MARKDOWN };
 
 // The options that every command has, for its table.
 #define COMMON_LONG_OPTIONS                                                                                                \

@@ -9,12 +9,13 @@ const struct command commands[] = {
 	{"check", "read plans or sets, lay out their lines and report, without images", command_check},
 	{"build", "make the images of plans or sets, prove them and write them", command_build},
 	{"prove", "prove images that are there against their plan or set", command_prove},
+	{"diff", "what changed between two plans, sets, or a plan and images", command_diff},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
 };
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
-static const char *const later_commands[] = {"diff",     "draw",  "sheet",  "fit", "lift",
+static const char *const later_commands[] = {"draw", "sheet", "fit", "lift",
                                              "readback", "probe", "export", "schema"};
 
 static void print_help(FILE *out)

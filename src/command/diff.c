@@ -1,0 +1,191 @@
+#include <getopt.h>
+#include <stdio.h>
+#include <string.h>
+#include <sys/stat.h>
+
+#include "command/command.h"
+
+static const char help[] =
+	"Usage: scanlatch diff [options] OLD NEW\n"
+	"       scanlatch diff --git PATH OLD HEX MODE NEW HEX MODE\n"
+	"\n"
+	"Says what changed between two plans, or two sets, in a builder's terms: what the machine does and no\n"
+	"longer does, limits that are kept or missed now, edges that moved, line types, the frame, clock,\n"
+	"signals, wiring, and for each chip whether it must be burned again. Plans are compared by meaning:\n"
+	"one that is only written otherwise has the same timeline. One of OLD and NEW may be a folder of\n"
+	"images of the other, as build writes them. Exit code 1: they differ.\n"
+	"\n"
+	"Options:\n"
+	"      --git          take the arguments of git's external diff; the exit code is 0 then\n"
+	"      --json         one JSON document instead of text\n"
+	"      --markdown     tables for a review instead of text\n"
+	"      --color WHEN   auto, always or never\n"
+	"  -h, --help         print this help\n"
+	"  -V, --version      print the version\n";
+
+static const struct option long_options[] = {
+	COMMON_LONG_OPTIONS,
+	{"git", no_argument, NULL, OPTION_GIT},
+	{"markdown", no_argument, NULL, OPTION_MARKDOWN},
+	{NULL, 0, NULL, 0},
+};
+
+struct diff_options {
+	struct common_options common;
+	bool git;
+	bool markdown;
+};
+
+static bool take(void *options, int option, const char *value)
+{
+	struct diff_options *diff = options;
+	(void)value;
+	diff->git = diff->git || option == OPTION_GIT;
+	diff->markdown = diff->markdown || option == OPTION_MARKDOWN;
+	return true;
+}
+
+static const struct option_table table = {"diff", help, "hV", long_options, take};
+
+// A plan or set with images that were proved: its own, or those of a folder.
+struct side {
+	scanlatch_plan *plan;   // NULL for a folder of the other's images
+	scanlatch_images *images;
+	scanlatch_proofs *proofs;
+};
+
+static bool is_folder(const char *path)
+{
+	struct stat status;
+	return stat(path, &status) == 0 && S_ISDIR(status.st_mode);
+}
+
+static void side_release(struct side *side)
+{
+	scanlatch_proofs_destroy(side->proofs);
+	scanlatch_images_destroy(side->images);
+	scanlatch_plan_destroy(side->plan);
+}
+
+// Proves what images there are. False when memory is out.
+static bool side_prove(struct side *side)
+{
+	side->proofs = side->images != NULL ? scanlatch_prove(side->images) : NULL;
+	return side->images == NULL || side->proofs != NULL;
+}
+
+static bool side_read(struct side *side, const char *path, scanlatch_messages *messages)
+{
+	side->plan = scanlatch_plan_read_file(path, messages);
+	side->images = side->plan != NULL ? scanlatch_images_make(side->plan, messages) : NULL;
+	return side_prove(side);
+}
+
+// The images of a folder, of the other side's plan.
+static bool side_read_folder(struct side *side, const struct side *other, const char *path, scanlatch_messages *messages)
+{
+	if (other->images == NULL)
+		return true;
+	side->images = scanlatch_images_create(other->plan);
+	if (side->images == NULL)
+		return false;
+	scanlatch_images_begin_as(side->images, other->images);
+	if (scanlatch_images_read_folder(side->images, path, messages))
+		return side_prove(side);
+	scanlatch_images_destroy(side->images);
+	side->images = NULL;
+	return true;
+}
+
+static char *report(const scanlatch_difference *difference, const struct diff_options *options)
+{
+	if (options->common.json)
+		return scanlatch_difference_json(difference);
+	return options->markdown ? scanlatch_difference_markdown(difference) : scanlatch_difference_text(difference);
+}
+
+static int compare(const char *const names[2], const struct side *sides, const struct diff_options *options)
+{
+	scanlatch_difference *difference = scanlatch_compare(names[0], sides[0].proofs, names[1], sides[1].proofs);
+	if (difference == NULL)
+		return memory_error();
+	int code = print_string(report(difference, options));
+	if (code == EXIT_GOOD && scanlatch_difference_found(difference))
+		code = EXIT_FOUND;
+	scanlatch_difference_destroy(difference);
+	return code;
+}
+
+// Reads both sides and compares them. `names` are what reports call the two.
+static int diff(const char *const paths[2], const char *const names[2], const struct diff_options *options, scanlatch_messages *messages)
+{
+	struct side sides[2] = {{NULL, NULL, NULL}, {NULL, NULL, NULL}};
+	struct progress progress = PROGRESS_NONE;
+	progress_begin(&progress, "comparing");
+	const int folder = is_folder(paths[0]) ? 0 : is_folder(paths[1]) ? 1 : -1;
+	bool good = true;
+	for (int index = 0; index < 2; index++)
+		good = good && (index == folder || side_read(&sides[index], paths[index], messages));
+	if (folder >= 0)
+		good = good && side_read_folder(&sides[folder], &sides[1 - folder], paths[folder], messages);
+	progress_end(&progress);
+	int code = print_messages(messages, options->common.colour);
+	if (!good)
+		code = worse(code, memory_error());
+	if (code == EXIT_GOOD)
+		code = compare(names, sides, options);
+	// What was read from the folder refers to the other side's plan.
+	side_release(&sides[folder >= 0 ? folder : 0]);
+	side_release(&sides[folder >= 0 ? 1 - folder : 1]);
+	return code;
+}
+
+// git's arguments: PATH OLD HEX MODE NEW HEX MODE, and for a renamed file two more. It takes an exit code other than 0 for a failure.
+static int diff_git(char **arguments, int count, const struct diff_options *options, scanlatch_messages *messages)
+{
+	if (count == 1) {
+		printf("%s: not merged\n", arguments[0]);
+		return EXIT_GOOD;
+	}
+	if (count != 7 && count != 9)
+		return usage_error("diff", "--git: wanted the seven arguments of git's external diff, found %d", count);
+	const char *const paths[2] = {arguments[1], arguments[4]}, *const names[2] = {arguments[0], count == 9 ? arguments[7] : arguments[0]};
+	printf("scanlatch diff %s\n", names[1]);
+	fflush(stdout);
+	if (strcmp(paths[0], "/dev/null") == 0 || strcmp(paths[1], "/dev/null") == 0) {
+		puts(strcmp(paths[0], "/dev/null") == 0 ? "the plan is new" : "the plan is gone");
+		return EXIT_GOOD;
+	}
+	const int code = diff(paths, names, options, messages);
+	if (code == EXIT_BAD)
+		puts("not compared: the messages on standard error say why");
+	return code == EXIT_SYSTEM ? EXIT_SYSTEM : EXIT_GOOD;
+}
+
+static int diff_two(char **arguments, int count, const struct diff_options *options, scanlatch_messages *messages)
+{
+	if (count != 2)
+		return usage_error("diff", "wanted OLD and NEW, found %d argument%s", count, count == 1 ? "" : "s");
+	const char *const paths[2] = {arguments[0], arguments[1]};
+	if (is_folder(paths[0]) && is_folder(paths[1]))
+		return usage_error("diff", "wanted at least one plan or set, found two folders");
+	if (strcmp(paths[0], "-") == 0 && strcmp(paths[1], "-") == 0)
+		return usage_error("diff", "only one of OLD and NEW can be standard input");
+	return diff(paths, paths, options, messages);
+}
+
+int command_diff(int argument_count, char **arguments)
+{
+	struct diff_options options = {.git = false};
+	const int parsed = parse_options(&table, argument_count, arguments, &options);
+	if (parsed != PARSED)
+		return parsed;
+	if (options.common.json && options.markdown)
+		return usage_error("diff", "--json and --markdown: wanted one of the two");
+	scanlatch_messages *messages = scanlatch_messages_create();
+	if (messages == NULL)
+		return memory_error();
+	const int code = (options.git ? diff_git : diff_two)(arguments + optind, argument_count - optind, &options, messages);
+	scanlatch_messages_destroy(messages);
+	return code;
+}
