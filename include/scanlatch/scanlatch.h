@@ -52,6 +52,8 @@ scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t 
 /* The same from a file; "-" is standard input, and called so. The file may also hold a set: then its plans are read too, and the result
  * stands for all of them: its name is the set's, its chips are those that they share, its images hold every bank, and its proofs judge each. */
 scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *messages);
+/* The same, where the file stands for another one: messages call it `name`, and the plans of a set are looked for in the folder of `name`. */
+scanlatch_plan *scanlatch_plan_read_file_as(const char *path, const char *name, scanlatch_messages *messages);
 void scanlatch_plan_destroy(scanlatch_plan *plan);
 
 /* The plan's name, as file names use it. Owned by the plan. Cannot fail. */
@@ -136,13 +138,14 @@ char *scanlatch_manifest(const scanlatch_proofs *proofs, unsigned files);
 
 typedef struct scanlatch_difference scanlatch_difference;
 
-/* Compares two plans (or sets) by meaning, and the images that were proved against them byte by byte. With both proofs of one plan only the images
- * are compared. The names are what reports call the two, their last parts. NULL when memory is out. The proofs, with what they are of, must outlive
- * the difference. */
+/* Compares two plans (or sets) by meaning, and the images that were proved against them byte by byte. With both proofs of one plan, the images that
+ * were read are compared with those that were made. The names are what reports call the two, their last parts. NULL when memory is out. The proofs,
+ * with what they are of, must outlive the difference. */
 scanlatch_difference *scanlatch_compare(const char *old_name, const scanlatch_proofs *old, const char *new_name, const scanlatch_proofs *now);
 void scanlatch_difference_destroy(scanlatch_difference *difference);
 
-/* True if anything changed but names, notes, and how the same cells are divided into regions. Cannot fail. */
+/* True if anything changed but words: names, notes, and how the same cells are divided into regions, lines and blocks; of a plan and images, if a
+ * must fails in the images that were read. Bytes may differ all the same: states can be allotted in many ways. Cannot fail. */
 bool scanlatch_difference_found(const scanlatch_difference *difference);
 
 /* The report for a terminal, as Markdown for a review, as JSON (shape: src/view/diff.h). NULL when memory is out. */

@@ -1,5 +1,6 @@
 #include <getopt.h>
 #include <stdio.h>
+#include <stdlib.h>
 #include <string.h>
 #include <sys/stat.h>
 
@@ -9,17 +10,21 @@ static const char help[] =
 	"Usage: scanlatch diff [options] OLD NEW\n"
 	"       scanlatch diff --git PATH OLD HEX MODE NEW HEX MODE\n"
 	"\n"
-	"Says what changed between two plans, or two sets, in a builder's terms: what the machine does and no\n"
-	"longer does, limits that are kept or missed now, edges that moved, line types, the frame, clock,\n"
-	"signals, wiring, and for each chip whether it must be burned again. Plans are compared by meaning:\n"
-	"one that is only written otherwise has the same timeline. One of OLD and NEW may be a folder of\n"
-	"images of the other, as build writes them. Exit code 1: they differ.\n"
+	"Says what changed between two plans or two sets: first what matters at the bench (whether the frame\n"
+	"closes and colour is in step, limits kept or missed now, for each chip whether it must be burned\n"
+	"again), then the changes: clock, signals, edges and regions of each line type, blocks of the frame,\n"
+	"machine, wiring. Plans are compared by what they mean: one that is only written otherwise has the same\n"
+	"timeline. One of OLD and NEW may be a folder of images of the other, as build writes them, or - for\n"
+	"standard input.\n"
+	"\n"
+	"Exit code 0: the same, but for words such as names and notes; images do what the plan says. 1: they\n"
+	"differ, or the images do not. With --git it is 0 in both cases.\n"
 	"\n"
 	"Options:\n"
-	"      --git          take the arguments of git's external diff; the exit code is 0 then\n"
+	"      --git          take the arguments of git's external diff: see gitattributes(5)\n"
 	"      --json         one JSON document instead of text\n"
 	"      --markdown     tables for a review instead of text\n"
-	"      --color WHEN   auto, always or never\n"
+	"      --color WHEN   auto, always or never: of messages\n"
 	"  -h, --help         print this help\n"
 	"  -V, --version      print the version\n";
 
@@ -74,9 +79,9 @@ static bool side_prove(struct side *side)
 	return side->images == NULL || side->proofs != NULL;
 }
 
-static bool side_read(struct side *side, const char *path, scanlatch_messages *messages)
+static bool side_read(struct side *side, const char *path, const char *name, scanlatch_messages *messages)
 {
-	side->plan = scanlatch_plan_read_file(path, messages);
+	side->plan = scanlatch_plan_read_file_as(path, name, messages);
 	side->images = side->plan != NULL ? scanlatch_images_make(side->plan, messages) : NULL;
 	return side_prove(side);
 }
@@ -116,8 +121,9 @@ static int compare(const char *const names[2], const struct side *sides, const s
 	return code;
 }
 
-// Reads both sides and compares them. `names` are what reports call the two.
-static int diff(const char *const paths[2], const char *const names[2], const struct diff_options *options, scanlatch_messages *messages)
+// Reads both sides and compares them. `names` are what reports call the two, `sources` what messages do.
+static int diff(const char *const paths[2], const char *const names[2], const char *const sources[2], const struct diff_options *options,
+                scanlatch_messages *messages)
 {
 	struct side sides[2] = {{NULL, NULL, NULL}, {NULL, NULL, NULL}};
 	struct progress progress = PROGRESS_NONE;
@@ -125,7 +131,7 @@ static int diff(const char *const paths[2], const char *const names[2], const st
 	const int folder = is_folder(paths[0]) ? 0 : is_folder(paths[1]) ? 1 : -1;
 	bool good = true;
 	for (int index = 0; index < 2; index++)
-		good = good && (index == folder || side_read(&sides[index], paths[index], messages));
+		good = good && (index == folder || side_read(&sides[index], paths[index], sources[index], messages));
 	if (folder >= 0)
 		good = good && side_read_folder(&sides[folder], &sides[1 - folder], paths[folder], messages);
 	progress_end(&progress);
@@ -140,38 +146,69 @@ static int diff(const char *const paths[2], const char *const names[2], const st
 	return code;
 }
 
-// git's arguments: PATH OLD HEX MODE NEW HEX MODE, and for a renamed file two more. It takes an exit code other than 0 for a failure.
+// What git calls with: PATH OLD HEX MODE NEW HEX MODE, and of a renamed file the new path and how alike the two are.
+enum { GIT_PATH, GIT_OLD, GIT_OLD_HEX, GIT_OLD_MODE, GIT_NEW, GIT_NEW_HEX, GIT_NEW_MODE, GIT_COUNT, GIT_RENAMED = 9 };
+
+static void print_git_heading(char **arguments, const char *name)
+{
+	const bool moded = strcmp(arguments[GIT_OLD_MODE], ".") != 0 && strcmp(arguments[GIT_NEW_MODE], ".") != 0;
+	printf("scanlatch diff %s", arguments[GIT_PATH]);
+	if (strcmp(name, arguments[GIT_PATH]) != 0)
+		printf(" to %s", name);
+	if (moded && strcmp(arguments[GIT_OLD_MODE], arguments[GIT_NEW_MODE]) != 0)
+		printf(", mode %s, was %s", arguments[GIT_NEW_MODE], arguments[GIT_OLD_MODE]);
+	puts("");
+	fflush(stdout); // messages follow on standard error
+}
+
+static int diff_git_pair(char **arguments, const char *name, const struct diff_options *options, scanlatch_messages *messages)
+{
+	const char *const paths[2] = {arguments[GIT_OLD], arguments[GIT_NEW]}, *const names[2] = {arguments[GIT_PATH], name};
+	char *old_source = malloc(strlen(arguments[GIT_PATH]) + sizeof " (old)");
+	if (old_source == NULL)
+		return memory_error();
+	strcat(strcpy(old_source, arguments[GIT_PATH]), " (old)");
+	const char *const sources[2] = {old_source, name};
+	const int code = diff(paths, names, sources, options, messages);
+	free(old_source);
+	if (code == EXIT_BAD)
+		puts("not compared, the messages say why; \"git diff --no-ext-diff\" shows the text");
+	return code == EXIT_SYSTEM ? EXIT_SYSTEM : EXIT_GOOD;
+}
+
+// git takes an exit code other than 0 for a failure.
 static int diff_git(char **arguments, int count, const struct diff_options *options, scanlatch_messages *messages)
 {
 	if (count == 1) {
-		printf("%s: not merged\n", arguments[0]);
+		printf("scanlatch diff %s\nnot merged yet\n", arguments[GIT_PATH]);
 		return EXIT_GOOD;
 	}
-	if (count != 7 && count != 9)
+	if (count != GIT_COUNT && count != GIT_RENAMED)
 		return usage_error("diff", "--git: wanted the seven arguments of git's external diff, found %d", count);
-	const char *const paths[2] = {arguments[1], arguments[4]}, *const names[2] = {arguments[0], count == 9 ? arguments[7] : arguments[0]};
-	printf("scanlatch diff %s\n", names[1]);
-	fflush(stdout);
-	if (strcmp(paths[0], "/dev/null") == 0 || strcmp(paths[1], "/dev/null") == 0) {
-		puts(strcmp(paths[0], "/dev/null") == 0 ? "the plan is new" : "the plan is gone");
-		return EXIT_GOOD;
-	}
-	const int code = diff(paths, names, options, messages);
-	if (code == EXIT_BAD)
-		puts("not compared: the messages on standard error say why");
-	return code == EXIT_SYSTEM ? EXIT_SYSTEM : EXIT_GOOD;
+	const char *name = count == GIT_RENAMED ? arguments[GIT_COUNT] : arguments[GIT_PATH];
+	const bool added = strcmp(arguments[GIT_OLD], "/dev/null") == 0, removed = strcmp(arguments[GIT_NEW], "/dev/null") == 0;
+	print_git_heading(arguments, name);
+	if (!added && !removed)
+		return diff_git_pair(arguments, name, options, messages);
+	puts(added ? "the file is new" : "the file is gone");
+	return EXIT_GOOD;
+}
+
+static const char *label_of(const char *path)
+{
+	return strcmp(path, "-") == 0 ? "standard input" : path;
 }
 
 static int diff_two(char **arguments, int count, const struct diff_options *options, scanlatch_messages *messages)
 {
 	if (count != 2)
 		return usage_error("diff", "wanted OLD and NEW, found %d argument%s", count, count == 1 ? "" : "s");
-	const char *const paths[2] = {arguments[0], arguments[1]};
+	const char *const paths[2] = {arguments[0], arguments[1]}, *const labels[2] = {label_of(arguments[0]), label_of(arguments[1])};
 	if (is_folder(paths[0]) && is_folder(paths[1]))
 		return usage_error("diff", "wanted at least one plan or set, found two folders");
 	if (strcmp(paths[0], "-") == 0 && strcmp(paths[1], "-") == 0)
 		return usage_error("diff", "only one of OLD and NEW can be standard input");
-	return diff(paths, paths, options, messages);
+	return diff(paths, labels, labels, options, messages);
 }
 
 int command_diff(int argument_count, char **arguments)
@@ -180,8 +217,8 @@ int command_diff(int argument_count, char **arguments)
 	const int parsed = parse_options(&table, argument_count, arguments, &options);
 	if (parsed != PARSED)
 		return parsed;
-	if (options.common.json && options.markdown)
-		return usage_error("diff", "--json and --markdown: wanted one of the two");
+	if (options.common.json + options.markdown + options.git > 1)
+		return usage_error("diff", "wanted at most one of --git, --json and --markdown");
 	scanlatch_messages *messages = scanlatch_messages_create();
 	if (messages == NULL)
 		return memory_error();

@@ -3,15 +3,14 @@
 
 #include "base/arena.h"
 #include "compare/parts.h"
+#include "plan/expression.h"
 
-#define MOST_ALIGNED 4000000u // products of block counts; beyond, what differs is told as a whole
-
-// Blocks with the new plan's line types; neighbours of one type are one block.
+// Blocks of one line type that follow each other are one, unless what they hold tells them apart.
 struct run {
-	size_t type;           // NONE: a type that is gone
-	size_t old_type;       // of the old plan's blocks
+	size_t type;           // the new plan's line type; NONE: one that is gone
+	size_t own_type;       // in the plan that has the block
+	size_t block;          // the first of them, from 0
 	int64_t repeat;
-	size_t match;          // in the other list, or NONE
 };
 
 struct runs {
@@ -19,17 +18,40 @@ struct runs {
 	size_t count;
 };
 
-static struct runs list_runs(struct comparing *comparing, const struct plan *plan, bool is_old)
+struct frames {
+	struct comparing *comparing;
+	struct runs old, now;
+	struct alignment runs;
+};
+
+// Whether lines of a type hold something that counts the lines of their block.
+static bool counts_rows(const struct line_type *line)
+{
+	for (size_t region = 0; region < line->region_count; region++)
+		for (size_t hold = 0; hold < line->regions[region].hold_count; hold++)
+			if (expression_uses(line->regions[region].holds[hold].expression, VARIABLE_ROW))
+				return true;
+	return false;
+}
+
+// Where every cell holds what it held, it does not matter how blocks are cut.
+static bool joins(const struct comparing *comparing, const struct plan *plan, const struct run *last, size_t own_type)
+{
+	return last != NULL && last->own_type == own_type && (comparing->same_holds || !counts_rows(&plan->lines[own_type]));
+}
+
+static struct runs list_runs(struct comparing *comparing, const struct plan *plan)
 {
 	struct runs runs = {arena_array(comparing->arena, plan->block_count, sizeof(struct run)), 0};
 	comparing->failed = comparing->failed || runs.list == NULL;
-	for (size_t index = 0; !comparing->failed && index < plan->block_count; index++) {
-		const size_t own = plan->blocks[index].line_type, type = is_old ? comparing->line_of[own] : own;
+	for (size_t index = 0; runs.list != NULL && index < plan->block_count; index++) {
+		const size_t own = plan->blocks[index].line_type;
 		struct run *last = runs.count > 0 ? &runs.list[runs.count - 1] : NULL;
-		if (last != NULL && last->type == type && (type != NONE || last->old_type == own))
+		if (joins(comparing, plan, last, own))
 			last->repeat += plan->blocks[index].repeat;
 		else
-			runs.list[runs.count++] = (struct run){type, own, plan->blocks[index].repeat, NONE};
+			runs.list[runs.count++] = (struct run){plan == comparing->old ? comparing->line_of[own] : own, own, index,
+			                                       plan->blocks[index].repeat};
 	}
 	return runs;
 }
@@ -39,141 +61,90 @@ static bool same_type(const struct run *old, const struct run *now)
 	return old->type != NONE && old->type == now->type;
 }
 
-// Of two alignments that match as many types, the one that matches more repeats too.
-static uint32_t worth(const struct run *old, const struct run *now)
+// Of two alignments that match as many blocks, the one that matches more repeats too.
+static uint32_t worth_of_blocks(const void *context, size_t old, size_t now)
 {
-	return old->repeat == now->repeat ? 3 : 2;
+	const struct frames *frames = context;
+	const struct run *left = &frames->old.list[old], *right = &frames->now.list[now];
+	return !same_type(left, right) ? 0 : left->repeat == right->repeat ? 3 : 2;
 }
 
-static void match_runs(struct run *old, struct run *now, size_t old_index, size_t now_index)
+static const char *block_words(struct comparing *comparing, const struct plan *plan, const struct run *run)
 {
-	old->match = now_index;
-	now->match = old_index;
+	return keep_words(comparing, "block %zu, \"%s\"", run->block + 1, plan->lines[run->own_type].name);
 }
 
-// Weighted alignment by the classic table, between what both ends have in common.
-static bool align_middle(struct comparing *comparing, struct runs *old, struct runs *now, size_t start, size_t old_end, size_t now_end)
+static const char *lines_words(struct comparing *comparing, int64_t repeat)
 {
-	const size_t rows = old_end - start, columns = now_end - start;
-	if (rows == 0 || columns == 0)
-		return true;
-	if (rows > MOST_ALIGNED / columns)
-		return false;
-	uint32_t *best = arena_array(comparing->arena, (rows + 1) * (columns + 1), sizeof *best);
-	comparing->failed = comparing->failed || best == NULL;
-	if (best == NULL)
-		return true;
-#define BEST(row, column) best[(row) * (columns + 1) + (column)]
-	for (size_t row = rows; row-- > 0;)
-		for (size_t column = columns; column-- > 0;) {
-			uint32_t value = BEST(row + 1, column) > BEST(row, column + 1) ? BEST(row + 1, column) : BEST(row, column + 1);
-			const struct run *left = &old->list[start + row], *right = &now->list[start + column];
-			if (same_type(left, right) && BEST(row + 1, column + 1) + worth(left, right) > value)
-				value = BEST(row + 1, column + 1) + worth(left, right);
-			BEST(row, column) = value;
-		}
-	for (size_t row = 0, column = 0; row < rows && column < columns;) {
-		struct run *left = &old->list[start + row], *right = &now->list[start + column];
-		if (same_type(left, right) && BEST(row, column) == BEST(row + 1, column + 1) + worth(left, right)) {
-			match_runs(left, right, start + row, start + column);
-			row++;
-			column++;
-		} else if (BEST(row, column) == BEST(row + 1, column)) {
-			row++;
-		} else {
-			column++;
-		}
-	}
-#undef BEST
-	return true;
-}
-
-// False if there are too many to be matched.
-static bool align(struct comparing *comparing, struct runs *old, struct runs *now)
-{
-	size_t start = 0, old_end = old->count, now_end = now->count;
-	while (start < old_end && start < now_end && same_type(&old->list[start], &now->list[start]) &&
-	       old->list[start].repeat == now->list[start].repeat) {
-		match_runs(&old->list[start], &now->list[start], start, start);
-		start++;
-	}
-	while (old_end > start && now_end > start && same_type(&old->list[old_end - 1], &now->list[now_end - 1]) &&
-	       old->list[old_end - 1].repeat == now->list[now_end - 1].repeat) {
-		old_end--;
-		now_end--;
-		match_runs(&old->list[old_end], &now->list[now_end], old_end, now_end);
-	}
-	return align_middle(comparing, old, now, start, old_end, now_end);
-}
-
-static const char *block_words(struct comparing *comparing, size_t number, const char *line)
-{
-	const char *words = arena_format(comparing->arena, "block %zu, \"%s\"", number, line);
-	comparing->failed = comparing->failed || words == NULL;
-	return words;
-}
-
-static const char *repeat_words(struct comparing *comparing, int64_t repeat)
-{
-	const char *words = arena_format(comparing->arena, "%" PRId64 " line%s", repeat, repeat == 1 ? "" : "s");
-	comparing->failed = comparing->failed || words == NULL;
-	return words;
+	return keep_words(comparing, "%" PRId64 " line%s", repeat, repeat == 1 ? "" : "s");
 }
 
 static void add_block(struct comparing *comparing, const char *kind, const char *what, const char *old, const char *now)
 {
-	if (!comparing->failed)
-		add_change(comparing, (struct change){.section = CHANGE_FRAME, .kind = kind, .what = what, .old = old, .now = now});
+	add_change(comparing, (struct change){.section = CHANGE_FRAME, .kind = kind, .what = what, .old = old, .now = now});
 }
 
-// A block that is gone at one place and new at another was moved. The index of the new one, or NONE.
-static size_t find_moved(const struct runs *now, const struct run *gone)
+// A block that is gone at one place and new at another was moved; the new one's number, or NONE. Looks at a limited number.
+static size_t find_moved(const struct frames *frames, size_t old)
 {
-	for (size_t index = 0; index < now->count; index++)
-		if (now->list[index].match == NONE && same_type(gone, &now->list[index]) && gone->repeat == now->list[index].repeat)
-			return index;
+	const struct run *gone = &frames->old.list[old];
+	for (size_t now = 0, looks = 0; now < frames->now.count && looks < 1000; now++) {
+		const struct run *run = &frames->now.list[now];
+		if (frames->runs.old_of[now] != NONE)
+			continue;
+		if (same_type(gone, run) && gone->repeat == run->repeat)
+			return now;
+		looks++;
+	}
 	return NONE;
 }
 
-static void tell_gone(struct comparing *comparing, struct runs *old, struct runs *now, size_t index)
+static void tell_gone(struct frames *frames, size_t old)
 {
-	struct run *run = &old->list[index];
-	const char *what = block_words(comparing, index + 1, comparing->old->lines[run->old_type].name);
-	const size_t moved = find_moved(now, run);
-	if (moved == NONE) {
-		add_block(comparing, "block-removed", what, repeat_words(comparing, run->repeat), NULL);
+	struct comparing *comparing = frames->comparing;
+	const struct run *run = &frames->old.list[old];
+	const size_t now = find_moved(frames, old);
+	if (now == NONE) {
+		add_block(comparing, "block-removed", block_words(comparing, comparing->old, run), lines_words(comparing, run->repeat), NULL);
 		return;
 	}
-	match_runs(run, &now->list[moved], index, moved);
-	const char *place = arena_format(comparing->arena, "block %zu", moved + 1);
-	comparing->failed = comparing->failed || place == NULL;
-	add_block(comparing, "block-moved", what, "there", place);
+	frames->runs.now_of[old] = now;
+	frames->runs.old_of[now] = old;
+	add_block(comparing, "block-moved", keep_words(comparing, "%s of \"%s\"", lines_words(comparing, run->repeat),
+	                                               comparing->now->lines[run->type].name),
+	          keep_words(comparing, "block %zu", run->block + 1), keep_words(comparing, "block %zu", frames->now.list[now].block + 1));
 }
 
-static void tell_blocks(struct comparing *comparing, struct runs *old, struct runs *now)
+static void tell_blocks(struct frames *frames)
 {
-	for (size_t index = 0; index < old->count; index++) {
-		const struct run *run = &old->list[index];
-		if (run->match == NONE)
-			tell_gone(comparing, old, now, index);
-		else if (run->repeat != now->list[run->match].repeat)
-			add_block(comparing, "repeat", block_words(comparing, run->match + 1, comparing->now->lines[run->type].name),
-			          repeat_words(comparing, run->repeat), repeat_words(comparing, now->list[run->match].repeat));
+	struct comparing *comparing = frames->comparing;
+	for (size_t old = 0; old < frames->old.count && !comparing->failed; old++) {
+		const struct run *run = &frames->old.list[old];
+		if (frames->runs.now_of[old] == NONE) {
+			tell_gone(frames, old);
+			continue;
+		}
+		const struct run *match = &frames->now.list[frames->runs.now_of[old]];
+		if (run->repeat != match->repeat)
+			add_block(comparing, "repeat", block_words(comparing, comparing->now, match), lines_words(comparing, run->repeat),
+			          lines_words(comparing, match->repeat));
 	}
-	for (size_t index = 0; index < now->count; index++)
-		if (now->list[index].match == NONE)
-			add_block(comparing, "block-added", block_words(comparing, index + 1, comparing->now->lines[now->list[index].type].name), NULL,
-			          repeat_words(comparing, now->list[index].repeat));
+	for (size_t now = 0; now < frames->now.count && !comparing->failed; now++)
+		if (frames->runs.old_of[now] == NONE)
+			add_block(comparing, "block-added", block_words(comparing, comparing->now, &frames->now.list[now]), NULL,
+			          lines_words(comparing, frames->now.list[now].repeat));
 }
 
 void compare_blocks(struct comparing *comparing)
 {
-	struct runs old = list_runs(comparing, comparing->old, true), now = list_runs(comparing, comparing->now, false);
-	if (comparing->failed)
+	struct frames frames = {.comparing = comparing, .old = list_runs(comparing, comparing->old), .now = list_runs(comparing, comparing->now)};
+	frames.runs.old_count = frames.old.count;
+	frames.runs.now_count = frames.now.count;
+	if (comparing->failed || !alignment_begin(comparing, &frames.runs))
 		return;
-	if (align(comparing, &old, &now))
-		tell_blocks(comparing, &old, &now);
-	else
-		add_block(comparing, "blocks", "the order of the blocks", arena_format(comparing->arena, "%zu blocks", old.count),
-		          arena_format(comparing->arena, "%zu blocks", now.count));
+	if (align_lists(comparing, worth_of_blocks, 3, &frames, &frames.runs))
+		tell_blocks(&frames);
+	else if (!comparing->failed)
+		add_block(comparing, "blocks", "blocks", keep_words(comparing, "%zu others", frames.old.count),
+		          keep_words(comparing, "%zu, too many to compare one by one", frames.now.count));
 }

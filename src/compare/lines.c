@@ -1,405 +1,161 @@
-// Line types, region by region: regions are matched by name and order, and lengths are compared so that one moved edge reads as one
-// change and not as two regions that changed.
+// Line types: which of the old plan is which of the new one.
 #include <inttypes.h>
+#include <stdlib.h>
 #include <string.h>
 
 #include "base/arena.h"
 #include "compare/parts.h"
+#include "plan/name_tree.h"
 
-#define MOST_ALIGNED 4000000u // products of region counts; beyond, regions are matched from both ends alone
-
-// A line type in both plans.
-struct line_pair {
-	struct comparing *comparing;
-	const struct line_type *old_line, *now_line;
-	const struct laid_line *old_laid, *now_laid;
-	size_t *now_of;        // [old regions]: the new line's region that an old one is, or NONE
-	size_t *old_of;        // [new regions]
-	const char *name;      // quoted
+// A line type that no name has matched, by what it shows.
+struct left_over {
+	uint64_t hash;
+	size_t line;
 };
-
-static size_t find_line(const struct plan *plan, const char *name)
-{
-	for (size_t index = 0; index < plan->line_count; index++)
-		if (strcmp(plan->lines[index].name, name) == 0)
-			return index;
-	return NONE;
-}
 
 // Whether two line types show the same, cell by cell.
 static bool shows_same(const struct comparing *comparing, size_t old, size_t now)
 {
 	const struct laid_line *left = &comparing->old_timeline->types[old], *right = &comparing->now_timeline->types[now];
+	uint64_t seen = 0, mapped = 0;
 	bool same = left->cells == right->cells;
-	for (uint32_t cell = 0; same && cell < left->cells; cell++)
-		same = map_signals(comparing, left->asserted[cell]) == right->asserted[cell];
+	for (uint32_t cell = 0; same && cell < left->cells; cell++) {
+		if (cell == 0 || left->asserted[cell] != seen)
+			mapped = map_signals(comparing, left->asserted[cell]);
+		seen = left->asserted[cell];
+		same = mapped == right->asserted[cell];
+	}
 	return same;
 }
 
-static bool is_taken(const struct comparing *comparing, size_t now)
+// A number that line types share if they show the same. `maps`: the line type is the old plan's.
+static uint64_t hash_line(const struct comparing *comparing, const struct laid_line *line, bool maps)
 {
-	for (size_t old = 0; old < comparing->old->line_count; old++)
-		if (comparing->line_of[old] == now)
-			return true;
-	return false;
+	uint64_t hash = line->cells, seen = 0, shown = 0;
+	for (uint32_t cell = 0; cell < line->cells; cell++) {
+		if (cell == 0 || line->asserted[cell] != seen)
+			shown = maps ? map_signals(comparing, line->asserted[cell]) : line->asserted[cell];
+		seen = line->asserted[cell];
+		hash = (hash ^ shown) * 0x9E3779B97F4A7C15u;
+		hash ^= hash >> 29;
+	}
+	return hash;
+}
+
+static int by_hash(const void *left, const void *right)
+{
+	const struct left_over *first = left, *second = right;
+	if (first->hash != second->hash)
+		return first->hash < second->hash ? -1 : 1;
+	return first->line < second->line ? -1 : first->line > second->line;
+}
+
+static struct left_over *list_left(struct comparing *comparing, bool is_old, size_t *count)
+{
+	const struct plan *plan = is_old ? comparing->old : comparing->now;
+	const struct laid_line *types = is_old ? comparing->old_timeline->types : comparing->now_timeline->types;
+	const size_t *matched = is_old ? comparing->line_of : comparing->old_line_of;
+	struct left_over *list = arena_array(comparing->arena, plan->line_count, sizeof *list);
+	*count = 0;
+	comparing->failed = comparing->failed || list == NULL;
+	for (size_t line = 0; list != NULL && line < plan->line_count; line++)
+		if (matched[line] == NONE)
+			list[(*count)++] = (struct left_over){hash_line(comparing, &types[line], is_old), line};
+	if (list != NULL)
+		qsort(list, *count, sizeof *list, by_hash);
+	return list;
+}
+
+static void pair_lines(struct comparing *comparing, size_t old, size_t now)
+{
+	comparing->line_of[old] = now;
+	comparing->old_line_of[now] = old;
+}
+
+// What no name has matched is the same line type if it shows the same.
+static void match_shown(struct comparing *comparing)
+{
+	size_t old_count, now_count;
+	const struct left_over *old = list_left(comparing, true, &old_count), *now = list_left(comparing, false, &now_count);
+	for (size_t left = 0, right = 0; old != NULL && now != NULL && left < old_count && right < now_count;) {
+		if (old[left].hash == now[right].hash && shows_same(comparing, old[left].line, now[right].line))
+			pair_lines(comparing, old[left++].line, now[right++].line);
+		else if (old[left].hash < now[right].hash)
+			left++;
+		else
+			right++;
+	}
+}
+
+static void match_named(struct comparing *comparing)
+{
+	struct name_tree names = {NULL};
+	for (size_t now = 0; now < comparing->now->line_count && !comparing->failed; now++) {
+		void **slot = name_tree_slot(comparing->arena, &names, comparing->now->lines[now].name);
+		comparing->failed = slot == NULL;
+		if (slot != NULL)
+			*slot = &comparing->old_line_of[now];
+	}
+	for (size_t old = 0; old < comparing->old->line_count && !comparing->failed; old++) {
+		void **slot = name_tree_slot(comparing->arena, &names, comparing->old->lines[old].name);
+		comparing->failed = slot == NULL;
+		if (slot != NULL && *slot != NULL)
+			pair_lines(comparing, old, (size_t)((size_t *)*slot - comparing->old_line_of));
+	}
+}
+
+static size_t *no_matches(struct comparing *comparing, size_t count)
+{
+	size_t *matches = arena_array(comparing->arena, count, sizeof *matches);
+	comparing->failed = comparing->failed || matches == NULL;
+	for (size_t index = 0; matches != NULL && index < count; index++)
+		matches[index] = NONE;
+	return matches;
+}
+
+static bool *used_lines(struct comparing *comparing, const struct plan *plan)
+{
+	bool *used = arena_array(comparing->arena, plan->line_count, sizeof *used);
+	comparing->failed = comparing->failed || used == NULL;
+	for (size_t block = 0; used != NULL && block < plan->block_count; block++)
+		used[plan->blocks[block].line_type] = true;
+	return used;
 }
 
 // By name; what is left over is the same if it shows the same.
 void match_lines(struct comparing *comparing)
 {
-	const struct plan *old = comparing->old, *now = comparing->now;
-	comparing->line_of = arena_array(comparing->arena, old->line_count, sizeof *comparing->line_of);
-	comparing->failed = comparing->failed || comparing->line_of == NULL;
-	if (comparing->failed)
-		return;
-	for (size_t index = 0; index < old->line_count; index++)
-		comparing->line_of[index] = find_line(now, old->lines[index].name);
-	for (size_t index = 0; index < old->line_count; index++)
-		for (size_t other = 0; comparing->line_of[index] == NONE && other < now->line_count; other++)
-			if (find_line(old, now->lines[other].name) == NONE && !is_taken(comparing, other) && shows_same(comparing, index, other))
-				comparing->line_of[index] = other;
+	comparing->line_of = no_matches(comparing, comparing->old->line_count);
+	comparing->old_line_of = no_matches(comparing, comparing->now->line_count);
+	comparing->old_used = used_lines(comparing, comparing->old);
+	comparing->now_used = used_lines(comparing, comparing->now);
+	if (!comparing->failed)
+		match_named(comparing);
+	if (!comparing->failed)
+		match_shown(comparing);
 }
 
-// The longest common subsequence of region names, by the classic table.
-static void align_middle(struct line_pair *pair, size_t start, size_t old_end, size_t now_end)
+// A line type of one plan alone. What the frame does not use changes nothing at the bench.
+static void add_alone(struct comparing *comparing, const char *kind, const struct plan *plan, const struct laid_line *types, size_t line,
+                      bool used)
 {
-	const size_t rows = old_end - start, columns = now_end - start;
-	if (rows == 0 || columns == 0 || rows > MOST_ALIGNED / columns)
-		return;
-	uint32_t *longest = arena_array(pair->comparing->arena, (rows + 1) * (columns + 1), sizeof *longest);
-	pair->comparing->failed = pair->comparing->failed || longest == NULL;
-	if (longest == NULL)
-		return;
-	for (size_t row = rows; row-- > 0;)
-		for (size_t column = columns; column-- > 0;) {
-			const uint32_t down = longest[(row + 1) * (columns + 1) + column], right = longest[row * (columns + 1) + column + 1];
-			const bool same = strcmp(pair->old_line->regions[start + row].name, pair->now_line->regions[start + column].name) == 0;
-			longest[row * (columns + 1) + column] =
-				same ? longest[(row + 1) * (columns + 1) + column + 1] + 1 : down > right ? down : right;
-		}
-	for (size_t row = 0, column = 0; row < rows && column < columns;) {
-		if (strcmp(pair->old_line->regions[start + row].name, pair->now_line->regions[start + column].name) == 0) {
-			pair->now_of[start + row] = start + column;
-			pair->old_of[start + column] = start + row;
-			row++;
-			column++;
-		} else if (longest[(row + 1) * (columns + 1) + column] >= longest[row * (columns + 1) + column + 1]) {
-			row++;
-		} else {
-			column++;
-		}
-	}
-}
-
-static void pair_regions(struct line_pair *pair, size_t old, size_t now)
-{
-	pair->now_of[old] = now;
-	pair->old_of[now] = old;
-}
-
-// What stands alone between the same neighbours has another name now.
-static void align_renamed(struct line_pair *pair)
-{
-	const size_t old_count = pair->old_line->region_count, now_count = pair->now_line->region_count;
-	for (size_t old = 0, now = 0; old < old_count && now < now_count;) {
-		if (pair->now_of[old] != NONE) {
-			now = pair->now_of[old++] + 1;
-			continue;
-		}
-		if (pair->old_of[now] != NONE) {
-			old++;
-			continue;
-		}
-		const bool alone = (old + 1 == old_count || pair->now_of[old + 1] != NONE) && (now + 1 == now_count || pair->old_of[now + 1] != NONE);
-		const bool asserts_same = map_signals(pair->comparing, pair->old_line->regions[old].assert_mask) ==
-		                          pair->now_line->regions[now].assert_mask;
-		if (!alone && !asserts_same) {
-			old++;
-			continue;
-		}
-		pair_regions(pair, old++, now++);
-	}
-}
-
-static void align_regions(struct line_pair *pair)
-{
-	const size_t old_count = pair->old_line->region_count, now_count = pair->now_line->region_count;
-	size_t start = 0, old_end = old_count, now_end = now_count;
-	for (size_t index = 0; index < old_count; index++)
-		pair->now_of[index] = NONE;
-	for (size_t index = 0; index < now_count; index++)
-		pair->old_of[index] = NONE;
-	while (start < old_end && start < now_end && strcmp(pair->old_line->regions[start].name, pair->now_line->regions[start].name) == 0) {
-		pair_regions(pair, start, start);
-		start++;
-	}
-	while (old_end > start && now_end > start &&
-	       strcmp(pair->old_line->regions[old_end - 1].name, pair->now_line->regions[now_end - 1].name) == 0)
-		pair_regions(pair, --old_end, --now_end);
-	align_middle(pair, start, old_end, now_end);
-	align_renamed(pair);
-}
-
-static const char *quoted(struct comparing *comparing, const char *name)
-{
-	const char *words = arena_format(comparing->arena, "\"%s\"", name);
-	comparing->failed = comparing->failed || words == NULL;
-	return words != NULL ? words : "";
-}
-
-static void add_of_line(struct line_pair *pair, struct change change)
-{
-	change.section = change.section == CHANGE_VERDICTS ? CHANGE_LINES : change.section;
-	change.lines = pair->name;
-	pair->comparing->failed = pair->comparing->failed || change.what == NULL;
-	if (!pair->comparing->failed)
-		add_change(pair->comparing, change);
-}
-
-// Lengths.
-
-static int64_t longer_by(const struct line_pair *pair, size_t old)
-{
-	return (int64_t)pair->now_laid->regions[pair->now_of[old]].cells - (int64_t)pair->old_laid->regions[old].cells;
-}
-
-// Whether a region and the one before it are next to each other in both lines.
-static bool follows(const struct line_pair *pair, size_t old)
-{
-	return pair->now_of[old] != NONE && pair->now_of[old - 1] != NONE && pair->now_of[old] == pair->now_of[old - 1] + 1;
-}
-
-static const char *now_name(const struct line_pair *pair, size_t old)
-{
-	return pair->now_line->regions[pair->now_of[old]].name;
-}
-
-// The edges from the end of one region to the start of another were moved alike.
-static void add_moved(struct line_pair *pair, size_t grown, size_t shrunk, int64_t cells)
-{
-	struct comparing *comparing = pair->comparing;
-	struct change change = {.shifted = true, .cells = cells, .ticks = cells * comparing->now->clock.cell_ticks};
-	if (shrunk == grown + 1) {
-		change.kind = "edge-moved";
-		change.what = arena_format(comparing->arena, "edge between \"%s\" and \"%s\"", now_name(pair, grown), now_name(pair, shrunk));
-	} else if (shrunk == grown + 2) {
-		change.kind = "region-moved";
-		change.what = arena_format(comparing->arena, "\"%s\", between \"%s\" and \"%s\"", now_name(pair, grown + 1), now_name(pair, grown),
-		                           now_name(pair, shrunk));
-	} else {
-		change.kind = "regions-moved";
-		change.what = arena_format(comparing->arena, "\"%s\" to \"%s\", between \"%s\" and \"%s\"", now_name(pair, grown + 1),
-		                           now_name(pair, shrunk - 1), now_name(pair, grown), now_name(pair, shrunk));
-	}
-	add_of_line(pair, change);
-}
-
-static void add_longer(struct line_pair *pair, size_t old, int64_t cells)
-{
-	add_of_line(pair, (struct change){.kind = "length", .what = quoted(pair->comparing, now_name(pair, old)), .shifted = true,
-	                                  .cells = cells, .ticks = cells * pair->comparing->now->clock.cell_ticks});
-}
-
-// The next region after one, next to next, whose length changed; NONE if there is a region between that came or went, or none.
-static size_t next_changed(const struct line_pair *pair, size_t old)
-{
-	for (size_t next = old + 1; next < pair->old_line->region_count && follows(pair, next); next++)
-		if (longer_by(pair, next) != 0)
-			return next;
-	return NONE;
-}
-
-static void compare_lengths(struct line_pair *pair)
-{
-	for (size_t old = 0; old < pair->old_line->region_count; old++) {
-		const int64_t cells = pair->now_of[old] != NONE ? longer_by(pair, old) : 0;
-		if (cells == 0)
-			continue;
-		const size_t other = next_changed(pair, old);
-		if (other != NONE && longer_by(pair, other) == -cells) {
-			add_moved(pair, old, other, cells);
-			old = other;
-		} else {
-			add_longer(pair, old, cells);
-		}
-	}
-	const int64_t cells = (int64_t)pair->now_laid->cells - (int64_t)pair->old_laid->cells;
-	if (cells != 0)
-		add_of_line(pair, (struct change){.kind = "line-length", .what = "the line", .shifted = true, .cells = cells,
-		                                  .ticks = pair->now_laid->ticks - pair->old_laid->ticks});
-}
-
-// Regions that came or went.
-
-static void put_asserted(struct text *out, const struct plan *plan, uint64_t mask)
-{
-	bool first = true;
-	for (size_t signal = 0; signal < plan->signal_count; signal++) {
-		if ((mask >> signal & 1) == 0)
-			continue;
-		text_printf(out, "%s%s", first ? "" : " ", plan->signals[signal].name);
-		first = false;
-	}
-	if (first)
-		text_put(out, "nothing");
-}
-
-static const char *describe(struct comparing *comparing, const struct plan *plan, const struct region *region,
-                            const struct laid_region *laid)
-{
-	struct text words = {0};
-	text_printf(&words, "%" PRIu32 " cell%s from cell %" PRIu32 ", asserts ", laid->cells, laid->cells == 1 ? "" : "s", laid->first_cell);
-	put_asserted(&words, plan, region->assert_mask);
-	return keep_text(comparing, &words);
-}
-
-static void compare_presence(struct line_pair *pair)
-{
-	struct comparing *comparing = pair->comparing;
-	for (size_t old = 0; old < pair->old_line->region_count; old++) {
-		const struct region *region = &pair->old_line->regions[old];
-		if (pair->now_of[old] == NONE)
-			add_of_line(pair, (struct change){.kind = "region-removed", .what = quoted(comparing, region->name),
-			                                  .old = describe(comparing, comparing->old, region, &pair->old_laid->regions[old])});
-	}
-	for (size_t now = 0; now < pair->now_line->region_count; now++) {
-		const struct region *region = &pair->now_line->regions[now];
-		if (pair->old_of[now] == NONE)
-			add_of_line(pair, (struct change){.kind = "region-added", .what = quoted(comparing, region->name),
-			                                  .now = describe(comparing, comparing->now, region, &pair->now_laid->regions[now])});
-	}
-}
-
-// What regions assert, stretch and hold.
-
-static void compare_asserted(struct line_pair *pair, const struct region *old, const struct region *now)
-{
-	struct comparing *comparing = pair->comparing;
-	// That a signal is gone is told once, as such; where a new one is asserted is told of each region.
-	if (map_signals(comparing, old->assert_mask) == now->assert_mask)
-		return;
-	struct text left = {0}, right = {0};
-	put_asserted(&left, comparing->old, old->assert_mask);
-	put_asserted(&right, comparing->now, now->assert_mask);
-	add_of_line(pair, (struct change){.kind = "asserts", .what = arena_format(comparing->arena, "\"%s\" asserts", now->name),
-	                                  .old = keep_text(comparing, &left), .now = keep_text(comparing, &right)});
-}
-
-static void compare_stretched(struct line_pair *pair, size_t old)
-{
-	struct comparing *comparing = pair->comparing;
-	const uint32_t before = pair->old_laid->regions[old].stretched, after = pair->now_laid->regions[pair->now_of[old]].stretched;
-	if (before == after)
-		return;
-	add_of_line(pair, (struct change){.kind = "stretched", .what = arena_format(comparing->arena, "stretched cells of \"%s\"", now_name(pair, old)),
-	                                  .old = arena_format(comparing->arena, "%" PRIu32, before),
-	                                  .now = arena_format(comparing->arena, "%" PRIu32, after)});
-}
-
-static void put_squeezed(struct text *out, const char *words)
-{
-	for (; *words != '\0'; words++)
-		if (*words != ' ')
-			text_put_bytes(out, words, 1);
-}
-
-static void put_holds(struct text *out, const struct plan *plan, const struct region *region)
-{
-	for (size_t field = 0; field < plan->machine.field_count; field++)
-		for (size_t index = 0; index < region->hold_count; index++) {
-			if (region->holds[index].field != field)
-				continue;
-			text_printf(out, "%s%s: ", out->length > 0 ? ", " : "", plan->machine.fields[field].name);
-			put_squeezed(out, region->holds[index].text);
-		}
-}
-
-static void compare_holds(struct line_pair *pair, const struct region *old, const struct region *now)
-{
-	struct comparing *comparing = pair->comparing;
-	struct text left = {0}, right = {0};
-	put_holds(&left, comparing->old, old);
-	put_holds(&right, comparing->now, now);
-	const char *before = keep_text(comparing, &left), *after = keep_text(comparing, &right);
-	if (before == NULL || after == NULL || comparing->same_holds || strcmp(before, after) == 0)
-		return;
-	add_of_line(pair, (struct change){.kind = "hold", .what = arena_format(comparing->arena, "\"%s\" holds", now->name),
-	                                  .old = before[0] != '\0' ? before : "nothing", .now = after[0] != '\0' ? after : "nothing"});
-}
-
-static void compare_pair(struct line_pair *pair)
-{
-	struct comparing *comparing = pair->comparing;
-	align_regions(pair);
-	compare_presence(pair);
-	compare_lengths(pair);
-	for (size_t old = 0; old < pair->old_line->region_count && !comparing->failed; old++) {
-		if (pair->now_of[old] == NONE)
-			continue;
-		const struct region *before = &pair->old_line->regions[old], *after = &pair->now_line->regions[pair->now_of[old]];
-		if (strcmp(before->name, after->name) != 0)
-			add_of_line(pair, (struct change){.section = CHANGE_WORDS, .kind = "region-renamed", .what = "a region's name",
-			                                  .old = quoted(comparing, before->name), .now = quoted(comparing, after->name)});
-		compare_asserted(pair, before, after);
-		compare_stretched(pair, old);
-		compare_holds(pair, before, after);
-	}
-}
-
-// Whether a line type that shows the same and holds the same is only described by other regions.
-static bool says_same(const struct comparing *comparing, size_t old, size_t now)
-{
-	return comparing->same_holds && shows_same(comparing, old, now) &&
-	       comparing->old->lines[old].region_count != comparing->now->lines[now].region_count;
-}
-
-static void compare_line(struct comparing *comparing, size_t old, size_t now)
-{
-	struct line_pair pair = {.comparing = comparing, .old_line = &comparing->old->lines[old], .now_line = &comparing->now->lines[now],
-	                         .old_laid = &comparing->old_timeline->types[old], .now_laid = &comparing->now_timeline->types[now]};
-	pair.now_of = arena_array(comparing->arena, pair.old_line->region_count, sizeof *pair.now_of);
-	pair.old_of = arena_array(comparing->arena, pair.now_line->region_count, sizeof *pair.old_of);
-	pair.name = quoted(comparing, pair.now_line->name);
-	comparing->failed = comparing->failed || pair.now_of == NULL || pair.old_of == NULL;
-	if (comparing->failed)
-		return;
-	if (strcmp(pair.old_line->name, pair.now_line->name) != 0)
-		add_change(comparing, (struct change){.section = CHANGE_WORDS, .kind = "line-renamed", .what = "a line type's name",
-		                                      .old = quoted(comparing, pair.old_line->name), .now = pair.name});
-	if (says_same(comparing, old, now))
-		add_change(comparing, (struct change){.section = CHANGE_WORDS, .kind = "regions-divided", .lines = pair.name,
-		                                      .what = "the same cells are divided into other regions"});
-	else
-		compare_pair(&pair);
-}
-
-static const char *line_facts(struct comparing *comparing, const struct laid_line *laid)
-{
-	const char *words = arena_format(comparing->arena, "%" PRIu32 " cells, %" PRId64 " ticks", laid->cells, laid->ticks);
-	comparing->failed = comparing->failed || words == NULL;
-	return words;
-}
-
-static const char *line_words(struct comparing *comparing, const char *name)
-{
-	const char *words = arena_format(comparing->arena, "line type \"%s\"", name);
-	comparing->failed = comparing->failed || words == NULL;
-	return words;
+	const bool removed = plan == comparing->old;
+	const char *facts = keep_words(comparing, "%" PRIu32 " cells, %" PRId64 " ticks%s", types[line].cells, types[line].ticks,
+	                               used ? "" : ", not in the frame");
+	add_change(comparing, (struct change){.section = used ? CHANGE_LINES : CHANGE_WORDS, .kind = kind,
+	                                      .what = keep_words(comparing, "line type \"%s\"", plan->lines[line].name),
+	                                      .old = removed ? facts : NULL, .now = removed ? NULL : facts});
 }
 
 void compare_lines(struct comparing *comparing)
 {
 	for (size_t old = 0; old < comparing->old->line_count && !comparing->failed; old++) {
 		if (comparing->line_of[old] != NONE)
-			compare_line(comparing, old, comparing->line_of[old]);
+			compare_regions(comparing, old, comparing->line_of[old]);
 		else
-			add_change(comparing, (struct change){.section = CHANGE_LINES, .kind = "line-removed",
-			                                      .what = line_words(comparing, comparing->old->lines[old].name),
-			                                      .old = line_facts(comparing, &comparing->old_timeline->types[old])});
+			add_alone(comparing, "line-removed", comparing->old, comparing->old_timeline->types, old, comparing->old_used[old]);
 	}
 	for (size_t now = 0; now < comparing->now->line_count && !comparing->failed; now++)
-		if (!is_taken(comparing, now))
-			add_change(comparing, (struct change){.section = CHANGE_LINES, .kind = "line-added",
-			                                      .what = line_words(comparing, comparing->now->lines[now].name),
-			                                      .now = line_facts(comparing, &comparing->now_timeline->types[now])});
+		if (comparing->old_line_of[now] == NONE)
+			add_alone(comparing, "line-added", comparing->now, comparing->now_timeline->types, now, comparing->now_used[now]);
 }

@@ -1,10 +1,11 @@
-// Clock, standard, signals, machine, timing: what a plan says of each, one by one.
+// Clock, standard, machine, timing: what a plan says of each, one by one.
 #include <inttypes.h>
 #include <string.h>
 
 #include "base/arena.h"
 #include "compare/parts.h"
 #include "view/figures.h"
+#include "view/standards.h"
 
 // Two texts to be compared.
 struct both {
@@ -96,35 +97,38 @@ void compare_clock(struct comparing *comparing)
 
 // Standard.
 
-static void put_limit(struct text *out, const struct standard *standard, enum limit_item item, enum limit_grade grade)
+static void put_given(struct text *out, enum limit_item item, const char *word, bool given, struct fraction value)
 {
-	const struct limit *limit = standard != NULL ? standard_limit(standard, item, grade) : NULL;
-	if (limit == NULL)
+	if (!given)
 		return;
-	text_put(out, limit->has_nominal ? "nominal " : "");
-	if (limit->has_nominal)
-		text_put_fraction(out, limit->nominal);
-	if (limit->has_low) {
-		text_put(out, " from ");
-		text_put_fraction(out, limit->low);
-	}
-	if (limit->has_high) {
-		text_put(out, " to ");
-		text_put_fraction(out, limit->high);
-	}
+	text_put(out, out->length > 0 ? " " : "");
+	text_put(out, word);
+	put_limit_value(out, item, value);
 }
 
-// Limits of a plan's own; those of two standards of the catalogue are not told one by one.
-static void compare_own_limits(struct comparing *comparing)
+static void put_limit(struct text *out, const struct standard *standard, enum limit_item item, enum limit_grade grade)
+{
+	const struct limit *limit = standard_limit(standard, item, grade);
+	if (limit == NULL)
+		return;
+	put_given(out, item, "", limit->has_nominal, limit->nominal);
+	put_given(out, item, "from ", limit->has_low, limit->low);
+	put_given(out, item, "to ", limit->has_high, limit->high);
+	if (limit_item_facts(item)->unit[0] != '\0')
+		text_printf(out, " %s", limit_item_facts(item)->unit);
+}
+
+// The limits of two standards of the catalogue are not told one by one; a plan's own are, at the grade that the new plan is held to.
+static void compare_limits(struct comparing *comparing)
 {
 	const struct standard *old = comparing->old->standard, *now = comparing->now->standard;
 	if (old == NULL || now == NULL || strcmp(old->name, now->name) != 0)
 		return;
 	for (unsigned item = 0; item < ITEM_COUNT; item++) {
 		struct both both = no_texts();
-		put_limit(&both.old, old, (enum limit_item)item, comparing->old->grade);
-		put_limit(&both.now, now, (enum limit_item)item, comparing->old->grade);
-		compare_both(comparing, CHANGE_STANDARD, limit_item_facts((enum limit_item)item)->name, &both);
+		put_limit(&both.old, old, (enum limit_item)item, comparing->now->grade);
+		put_limit(&both.now, now, (enum limit_item)item, comparing->now->grade);
+		compare_both(comparing, CHANGE_STANDARD, keep_words(comparing, "limit of %s", limit_item_facts((enum limit_item)item)->name), &both);
 	}
 }
 
@@ -133,144 +137,144 @@ void compare_standard(struct comparing *comparing)
 	const struct plan *old = comparing->old, *now = comparing->now;
 	compare_words(comparing, CHANGE_STANDARD, "standard", old->standard != NULL ? old->standard->name : NULL,
 	              now->standard != NULL ? now->standard->name : NULL);
-	compare_words(comparing, CHANGE_STANDARD, "grade", limit_grade_name(old->grade), limit_grade_name(now->grade));
-	compare_own_limits(comparing);
-}
-
-// Signals.
-
-static size_t find_named(const struct plan *plan, const char *name)
-{
-	for (size_t index = 0; index < plan->signal_count; index++)
-		if (strcmp(plan->signals[index].name, name) == 0)
-			return index;
-	return NONE;
-}
-
-// By name; what is left over by role, since only plain signals share theirs.
-void match_signals(struct comparing *comparing)
-{
-	const struct plan *old = comparing->old, *now = comparing->now;
-	comparing->signal_of = arena_array(comparing->arena, old->signal_count, sizeof *comparing->signal_of);
-	comparing->failed = comparing->failed || comparing->signal_of == NULL;
-	for (size_t index = 0; !comparing->failed && index < old->signal_count; index++) {
-		const enum role role = old->signals[index].role;
-		size_t match = find_named(now, old->signals[index].name);
-		if (match == NONE && role != ROLE_PLAIN && now->role_signal[role] >= 0 &&
-		    find_named(old, now->signals[now->role_signal[role]].name) == NONE)
-			match = (size_t)now->role_signal[role];
-		comparing->signal_of[index] = match;
-	}
-}
-
-static void put_origin(struct text *out, const struct plan *plan, const struct signal *signal)
-{
-	if (signal->origin == FROM_DATA) {
-		text_put(out, "data");
-		return;
-	}
-	text_printf(out, "field %s, codes", plan->machine.fields[signal->field].name);
-	if (signal->auto_codes)
-		text_put(out, " auto");
-	for (size_t code = 0; code < signal->code_count; code++)
-		text_printf(out, " %" PRIu32, signal->codes[code]);
-}
-
-static void put_signal(struct text *out, const struct plan *plan, const struct signal *signal)
-{
-	text_printf(out, "%s, active %s", role_name(signal->role), signal->active_high ? "high" : "low");
-	if (signal->lead_cells != 0)
-		text_printf(out, ", lead %" PRId64, signal->lead_cells);
-	if (plan->machine.form == FORM_LINE_FRAME)
-		text_printf(out, ", %s stage", stage_name(signal->stage));
-	text_put(out, ", from ");
-	put_origin(out, plan, signal);
-}
-
-static const char *signal_words(struct comparing *comparing, const char *name)
-{
-	const char *words = arena_format(comparing->arena, "signal %s", name);
-	comparing->failed = comparing->failed || words == NULL;
-	return words != NULL ? words : "";
-}
-
-void compare_signals(struct comparing *comparing)
-{
-	const struct plan *old = comparing->old, *now = comparing->now;
-	uint64_t matched = 0;
-	for (size_t index = 0; index < old->signal_count; index++) {
-		const size_t match = comparing->signal_of[index];
-		struct both both = no_texts();
-		put_signal(&both.old, old, &old->signals[index]);
-		if (match != NONE) {
-			put_signal(&both.now, now, &now->signals[match]);
-			matched |= (uint64_t)1 << match;
-			if (strcmp(old->signals[index].name, now->signals[match].name) != 0)
-				compare_words(comparing, CHANGE_WORDS, "a signal's name", old->signals[index].name, now->signals[match].name);
-		}
-		compare_both(comparing, CHANGE_SIGNALS, signal_words(comparing, match != NONE ? now->signals[match].name : old->signals[index].name),
-		             &both);
-	}
-	for (size_t index = 0; index < now->signal_count; index++) {
-		if (matched >> index & 1)
-			continue;
-		struct both both = no_texts();
-		put_signal(&both.now, now, &now->signals[index]);
-		compare_both(comparing, CHANGE_SIGNALS, signal_words(comparing, now->signals[index].name), &both);
-	}
+	// Without a standard, the grade is the grade of nothing.
+	if (old->standard != NULL && now->standard != NULL)
+		compare_words(comparing, CHANGE_STANDARD, "grade", limit_grade_name(old->grade), limit_grade_name(now->grade));
+	compare_limits(comparing);
 }
 
 // Machine.
 
-static void put_stage(struct text *out, const struct plan *plan, enum stage stage)
+enum stage_property { PROPERTY_STATE, PROPERTY_OUTPUTS, PROPERTY_ADVANCE, PROPERTY_CLEAR, STAGE_PROPERTIES };
+
+static const char *const property_names[STAGE_PROPERTIES] = {
+	[PROPERTY_STATE] = "state", [PROPERTY_OUTPUTS] = "outputs", [PROPERTY_ADVANCE] = "advance", [PROPERTY_CLEAR] = "clear",
+};
+
+static void put_stage(struct text *out, const struct plan *plan, enum stage stage, enum stage_property property)
 {
 	const struct stage_plan *of = machine_stage(&plan->machine, stage);
 	if (stage == STAGE_FRAME && plan->machine.form == FORM_LOOP)
 		return;
-	text_printf(out, "%u bits, outputs %s, advance %s", of->state_bits, of->outputs == OUTPUTS_DIRECT ? "direct" : "registered",
-	            of->advance == ADVANCE_COUNT ? "count" : "table");
-	if (of->advance == ADVANCE_COUNT)
-		text_printf(out, ", clear %s", of->clear == CLEAR_ASYNC ? "async" : "sync");
+	switch (property) {
+	case PROPERTY_STATE: text_put_count(out, of->state_bits, "bit", "bits"); break;
+	case PROPERTY_OUTPUTS: text_put(out, of->outputs == OUTPUTS_DIRECT ? "direct" : "registered"); break;
+	case PROPERTY_ADVANCE: text_put(out, of->advance == ADVANCE_COUNT ? "count" : "table"); break;
+	default:
+		if (of->advance == ADVANCE_COUNT)
+			text_put(out, of->clear == CLEAR_ASYNC ? "async" : "sync");
+	}
 }
 
-static void put_fields(struct text *out, const struct plan *plan)
+static void compare_stage(struct comparing *comparing, enum stage stage)
 {
-	for (size_t index = 0; index < plan->machine.field_count; index++) {
-		const struct field *field = &plan->machine.fields[index];
-		text_printf(out, "%s%s: %u..%u", index > 0 ? ", " : "", field->name, field->high, field->low);
+	const bool loops = comparing->old->machine.form == FORM_LOOP && comparing->now->machine.form == FORM_LOOP;
+	for (unsigned property = 0; property < STAGE_PROPERTIES; property++) {
+		struct both both = no_texts();
+		put_stage(&both.old, comparing->old, stage, (enum stage_property)property);
+		put_stage(&both.now, comparing->now, stage, (enum stage_property)property);
+		compare_both(comparing, CHANGE_MACHINE, loops ? property_names[property] :
+		             keep_words(comparing, "%s stage, %s", stage_name(stage), property_names[property]), &both);
 	}
+}
+
+static size_t find_named(const struct plan *plan, const char *name)
+{
+	for (size_t index = 0; index < plan->machine.field_count; index++)
+		if (strcmp(plan->machine.fields[index].name, name) == 0)
+			return index;
+	return NONE;
+}
+
+// A field of the new plan with the same bits and a name that the old one does not have.
+static size_t find_renamed(const struct comparing *comparing, const struct field *field)
+{
+	const struct machine_plan *machine = &comparing->now->machine;
+	for (size_t index = 0; index < machine->field_count; index++)
+		if (machine->fields[index].high == field->high && machine->fields[index].low == field->low &&
+		    find_named(comparing->old, machine->fields[index].name) == NONE)
+			return index;
+	return NONE;
+}
+
+// By name; what is left over is the same if its bits are.
+void match_fields(struct comparing *comparing)
+{
+	const struct machine_plan *machine = &comparing->old->machine;
+	uint64_t taken = 0;
+	comparing->field_of = arena_array(comparing->arena, machine->field_count, sizeof *comparing->field_of);
+	comparing->failed = comparing->failed || comparing->field_of == NULL;
+	for (size_t index = 0; !comparing->failed && index < machine->field_count; index++) {
+		size_t match = find_named(comparing->now, machine->fields[index].name);
+		if (match == NONE)
+			match = find_renamed(comparing, &machine->fields[index]);
+		if (match != NONE && (taken >> match & 1) != 0)
+			match = NONE;
+		taken |= match != NONE ? (uint64_t)1 << match : 0;
+		comparing->field_of[index] = match;
+	}
+}
+
+static void put_field(struct text *out, const struct field *field)
+{
+	if (field == NULL)
+		return;
+	text_printf(out, "bit%s %u", field->high == field->low ? "" : "s", field->high);
+	if (field->high != field->low)
+		text_printf(out, "..%u", field->low);
+}
+
+static void compare_field(struct comparing *comparing, const struct field *old, const struct field *now)
+{
+	struct both both = no_texts();
+	put_field(&both.old, old);
+	put_field(&both.now, now);
+	if (old != NULL && now != NULL)
+		compare_words(comparing, CHANGE_WORDS, "a field's name", old->name, now->name);
+	compare_both(comparing, CHANGE_MACHINE, keep_words(comparing, "field %s", now != NULL ? now->name : old->name), &both);
+}
+
+static void compare_fields(struct comparing *comparing)
+{
+	const struct machine_plan *old = &comparing->old->machine, *now = &comparing->now->machine;
+	uint64_t matched = 0;
+	for (size_t index = 0; index < old->field_count; index++) {
+		const size_t match = comparing->field_of[index];
+		matched |= match != NONE ? (uint64_t)1 << match : 0;
+		compare_field(comparing, &old->fields[index], match != NONE ? &now->fields[match] : NULL);
+	}
+	for (size_t index = 0; index < now->field_count; index++)
+		if ((matched >> index & 1) == 0)
+			compare_field(comparing, NULL, &now->fields[index]);
 }
 
 void compare_machine(struct comparing *comparing)
 {
 	const struct plan *plans[2] = {comparing->old, comparing->now};
-	struct both form = no_texts(), line = no_texts(), frame = no_texts(), kind = no_texts(), fields = no_texts(), start = no_texts();
+	struct both form = no_texts(), kind = no_texts(), start = no_texts();
 	for (unsigned side = 0; side < 2; side++) {
 		const struct machine_plan *machine = &plans[side]->machine;
 		text_put(side == 0 ? &form.old : &form.now, machine->form == FORM_LOOP ? "loop" : "line-frame");
-		put_stage(side == 0 ? &line.old : &line.now, plans[side], STAGE_LINE);
-		put_stage(side == 0 ? &frame.old : &frame.now, plans[side], STAGE_FRAME);
 		if (machine->kind_bits > 0)
-			text_printf(side == 0 ? &kind.old : &kind.now, "%u bits", machine->kind_bits);
-		put_fields(side == 0 ? &fields.old : &fields.now, plans[side]);
+			text_put_count(side == 0 ? &kind.old : &kind.now, machine->kind_bits, "bit", "bits");
 		if (machine->has_start)
 			text_put_hex(side == 0 ? &start.old : &start.now, machine->start, machine->line.state_bits);
 	}
 	compare_both(comparing, CHANGE_MACHINE, "form", &form);
-	compare_both(comparing, CHANGE_MACHINE, "line stage", &line);
-	compare_both(comparing, CHANGE_MACHINE, "frame stage", &frame);
+	compare_stage(comparing, STAGE_LINE);
+	compare_stage(comparing, STAGE_FRAME);
 	compare_both(comparing, CHANGE_MACHINE, "kind", &kind);
-	compare_both(comparing, CHANGE_MACHINE, "fields", &fields);
+	compare_fields(comparing);
 	compare_both(comparing, CHANGE_MACHINE, "start", &start);
 }
 
 // Timing and sweeps.
 
-enum timing_property { TIMING_LATCH, TIMING_COUNTERS, TIMING_DECODER, TIMING_SHARE, TIMING_MARGIN, TIMING_SWEEPS, TIMING_PROPERTIES };
+enum timing_property { TIMING_LATCH, TIMING_COUNTERS, TIMING_DECODER, TIMING_SHARE, TIMING_MARGIN, TIMING_PROPERTIES };
 
 static const char *const timing_names[TIMING_PROPERTIES] = {
 	[TIMING_LATCH] = "latch", [TIMING_COUNTERS] = "counters", [TIMING_DECODER] = "decoder",
-	[TIMING_SHARE] = "share", [TIMING_MARGIN] = "margin",     [TIMING_SWEEPS] = "sweeps",
+	[TIMING_SHARE] = "share", [TIMING_MARGIN] = "margin",
 };
 
 static void put_part_times(struct text *out, const char *part, struct fraction delay_s, const struct fraction *setup_s)
@@ -308,11 +312,49 @@ static void put_timing(struct text *out, const struct plan *plan, enum timing_pr
 		text_put_time_in(out, timing->margin_s, UNIT_NANOSECONDS);
 		break;
 	default:
-		for (size_t index = 0; index < plan->sweep_count; index++) {
-			text_printf(out, "%s%s within ", index > 0 ? ", " : "", plan->sweeps[index].text);
-			text_put_time(out, plan->sweeps[index].within_s);
-		}
+		break;
 	}
+}
+
+// Sweeps: each that the other plan does not have too.
+
+static bool has_sweep(const struct plan *plan, const struct sweep *wanted)
+{
+	for (size_t index = 0; index < plan->sweep_count; index++)
+		if (plan->sweeps[index].high == wanted->high && plan->sweeps[index].low == wanted->low &&
+		    fraction_compare(plan->sweeps[index].within_s, wanted->within_s) == 0)
+			return true;
+	return false;
+}
+
+static const struct sweep *same_bits(const struct plan *plan, const struct plan *other, const struct sweep *sweep)
+{
+	for (size_t index = 0; index < plan->sweep_count; index++)
+		if (plan->sweeps[index].high == sweep->high && plan->sweeps[index].low == sweep->low && !has_sweep(other, &plan->sweeps[index]))
+			return &plan->sweeps[index];
+	return NULL;
+}
+
+static void compare_sweep(struct comparing *comparing, const struct sweep *old, const struct sweep *now)
+{
+	const struct sweep *sweep = now != NULL ? now : old;
+	struct both both = no_texts();
+	if (old != NULL)
+		text_put_time(&both.old, old->within_s);
+	if (now != NULL)
+		text_put_time(&both.now, now->within_s);
+	compare_both(comparing, CHANGE_TIMING, keep_words(comparing, "sweep of bits %u..%u within", sweep->high, sweep->low), &both);
+}
+
+static void compare_sweeps(struct comparing *comparing)
+{
+	const struct plan *old = comparing->old, *now = comparing->now;
+	for (size_t index = 0; index < old->sweep_count; index++)
+		if (!has_sweep(now, &old->sweeps[index]))
+			compare_sweep(comparing, &old->sweeps[index], same_bits(now, old, &old->sweeps[index]));
+	for (size_t index = 0; index < now->sweep_count; index++)
+		if (!has_sweep(old, &now->sweeps[index]) && same_bits(old, now, &now->sweeps[index]) == NULL)
+			compare_sweep(comparing, NULL, &now->sweeps[index]);
 }
 
 void compare_timing(struct comparing *comparing)
@@ -323,4 +365,5 @@ void compare_timing(struct comparing *comparing)
 		put_timing(&both.now, comparing->now, (enum timing_property)property);
 		compare_both(comparing, CHANGE_TIMING, timing_names[property], &both);
 	}
+	compare_sweeps(comparing);
 }

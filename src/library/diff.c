@@ -16,8 +16,8 @@ struct scanlatch_difference {
 // A side of a comparison.
 struct side {
 	const scanlatch_plan *plan;
-	const scanlatch_images *images; // NULL if there are none
-	const scanlatch_proofs *proofs; // of them; NULL
+	const scanlatch_images *images;
+	const scanlatch_proofs *proofs;
 };
 
 // The member of a plan or set that a bank shows; a plan alone shows in every bank.
@@ -39,32 +39,37 @@ static size_t shown_in(const struct side *side, unsigned bank)
 	return side->plan->set != NULL && bank >= 1u << side->plan->plan->bank_bits ? SIZE_MAX : member_of(side->plan, bank);
 }
 
-// The names of musts that fail, or NULL when memory is out.
-static const char *failed_musts(struct arena *arena, const struct side *side, size_t member)
+// The names of proofs that fail, of musts or of advice, or NULL when memory is out.
+static const char *failed_proofs(struct arena *arena, const struct side *side, size_t member, bool musts)
 {
 	struct text names = {0};
 	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
-		if (proof_is_must(kind) && side->proofs->proofs[member]->proof[kind].verdict == VERDICT_FAIL)
+		if (proof_is_must(kind) == musts && side->proofs->proofs[member]->proof[kind].verdict == VERDICT_FAIL)
 			text_printf(&names, "%s%s", names.length > 0 ? ", " : "", proof_name(kind));
 	const char *kept = names.failed ? NULL : arena_copy(arena, text_string(&names), names.length);
 	text_release(&names);
 	return kept;
 }
 
-// All banks that show the same two members, in words: "banks 0, 2 and 3".
-static const char *bank_words(struct arena *arena, const struct side *old, const struct side *now, unsigned first)
+static bool name_failures(struct arena *arena, const struct side *old, size_t before, const struct side *now, size_t after,
+                          struct plan_difference *plan)
 {
-	struct text words = {0};
-	unsigned count = 0;
-	for (unsigned bank = first; bank < banks_of(old, now); bank++) {
-		if (shown_in(old, bank) != shown_in(old, first) || shown_in(now, bank) != shown_in(now, first))
-			continue;
-		text_printf(&words, "%s%u", count > 0 ? ", " : "", bank);
-		count++;
-	}
-	const char *kept = words.failed ? NULL : arena_format(arena, "%s %s", count == 1 ? "bank" : "banks", text_string(&words));
-	text_release(&words);
-	return kept;
+	plan->old_musts = failed_proofs(arena, old, before, true);
+	plan->now_musts = failed_proofs(arena, now, after, true);
+	plan->old_advice = failed_proofs(arena, old, before, false);
+	plan->now_advice = failed_proofs(arena, now, after, false);
+	return plan->old_musts != NULL && plan->now_musts != NULL && plan->old_advice != NULL && plan->now_advice != NULL;
+}
+
+// All banks that show the same two members as the first.
+static bool list_banks(struct arena *arena, const struct side *old, const struct side *now, unsigned first, struct plan_difference *plan)
+{
+	uint32_t *banks = arena_array(arena, banks_of(old, now), sizeof *banks);
+	for (unsigned bank = first; banks != NULL && bank < banks_of(old, now); bank++)
+		if (shown_in(old, bank) == shown_in(old, first) && shown_in(now, bank) == shown_in(now, first))
+			banks[plan->bank_count++] = bank;
+	plan->banks = banks;
+	return banks != NULL;
 }
 
 static bool is_told(const struct side *old, const struct side *now, unsigned bank)
@@ -79,21 +84,17 @@ static bool compare_members(struct arena *arena, const struct side *old, const s
 {
 	const size_t before = shown_in(old, bank), after = shown_in(now, bank);
 	*plan = (struct plan_difference){.banks = NULL};
-	if (old->plan->set != NULL || now->plan->set != NULL) {
-		plan->banks = bank_words(arena, old, now, bank);
-		if (plan->banks == NULL)
-			return false;
-	}
+	if ((old->plan->set != NULL || now->plan->set != NULL) && !list_banks(arena, old, now, bank, plan))
+		return false;
 	if (before == SIZE_MAX || after == SIZE_MAX) {
-		plan->only = before == SIZE_MAX ? "only the new set has it" : "only the old set had it";
+		plan->only = before == SIZE_MAX ? "new" : "old";
 		return true;
 	}
 	plan->comparison = comparison_create(old->plan->members[before].timeline, now->plan->members[after].timeline);
-	if (old->proofs != NULL && now->proofs != NULL) {
-		plan->old_musts = failed_musts(arena, old, before);
-		plan->now_musts = failed_musts(arena, now, after);
-	}
-	return plan->comparison != NULL && (old->proofs == NULL || now->proofs == NULL || (plan->old_musts != NULL && plan->now_musts != NULL));
+	// Of the two, one was made from the plan; whichever was read is of interest.
+	if (old->plan == now->plan)
+		plan->images = (now->images->members[after].table == NULL ? now : old)->proofs->proofs[after];
+	return plan->comparison != NULL && name_failures(arena, old, before, now, after, plan);
 }
 
 static bool compare_plans(struct scanlatch_difference *result, const struct side *old, const struct side *now)
@@ -108,14 +109,6 @@ static bool compare_plans(struct scanlatch_difference *result, const struct side
 	return true;
 }
 
-static size_t chip_of_label(const scanlatch_plan *plan, const char *label)
-{
-	for (size_t index = 0; index < plan->plan->chip_count; index++)
-		if (strcmp(plan->plan->chips[index].label, label) == 0)
-			return index;
-	return SIZE_MAX;
-}
-
 static void compare_bytes(const struct image *old, const struct image *now, struct chip_difference *chip)
 {
 	chip->fate = CHIP_STAYS;
@@ -128,18 +121,45 @@ static void compare_bytes(const struct image *old, const struct image *now, stru
 	}
 }
 
-static struct chip_difference compare_chip(const struct side *old, const struct side *now, size_t index)
+// What a chip was; the chips of all plans of a set are the same.
+static size_t old_chip(const struct difference *difference, size_t chip)
+{
+	return difference->plans[0].comparison->old_chip_of[chip];
+}
+
+static struct chip_difference compare_chip(const struct difference *difference, const struct side *old, const struct side *now, size_t index)
 {
 	const struct chip *chip = &now->plan->plan->chips[index];
-	const size_t before = chip_of_label(old->plan, chip->label);
+	const size_t before = old_chip(difference, index);
 	struct chip_difference result = {.label = chip->label, .bytes = now->images->images[index].length, .fate = CHIP_NEW};
 	if (before == SIZE_MAX)
 		return result;
+	if (strcmp(old->plan->plan->chips[before].label, chip->label) != 0)
+		result.old_label = old->plan->plan->chips[before].label;
 	if (old->images->images[before].length != result.bytes)
 		result.fate = CHIP_OTHER_SIZE;
 	else
 		compare_bytes(&old->images->images[before], &now->images->images[index], &result);
 	return result;
+}
+
+static bool is_gone(const struct difference *difference, const struct side *now, size_t old)
+{
+	for (size_t chip = 0; chip < now->plan->plan->chip_count; chip++)
+		if (old_chip(difference, chip) == old)
+			return false;
+	return true;
+}
+
+// Where the machine that is meant is the same, chips with other bytes have it in another allotment of states: they do.
+static void spare_chips(const struct difference *difference, struct chip_difference *chips)
+{
+	for (size_t index = 0; index < difference->chip_count; index++)
+		if (chips[index].fate != CHIP_STAYS && chips[index].fate != CHIP_BURN)
+			return;
+	for (size_t index = 0; index < difference->chip_count && !difference_found(difference); index++)
+		if (chips[index].fate == CHIP_BURN)
+			chips[index].fate = CHIP_OTHER_BYTES;
 }
 
 static bool compare_chips(struct scanlatch_difference *result, const struct side *old, const struct side *now)
@@ -150,13 +170,13 @@ static bool compare_chips(struct scanlatch_difference *result, const struct side
 	if (chips == NULL)
 		return false;
 	difference->chips = chips;
-	difference->has_chips = true;
 	for (size_t index = 0; index < after; index++)
-		chips[difference->chip_count++] = compare_chip(old, now, index);
+		chips[difference->chip_count++] = compare_chip(difference, old, now, index);
 	for (size_t index = 0; index < before; index++)
-		if (chip_of_label(now->plan, old->plan->plan->chips[index].label) == SIZE_MAX)
+		if (is_gone(difference, now, index))
 			chips[difference->chip_count++] = (struct chip_difference){
 				.label = old->plan->plan->chips[index].label, .fate = CHIP_GONE, .bytes = old->images->images[index].length};
+	spare_chips(difference, chips);
 	return true;
 }
 
@@ -170,7 +190,7 @@ static bool name_sides(struct scanlatch_difference *result, const char *old_name
 static bool compare_sides(struct scanlatch_difference *result, const struct side *old, const struct side *now)
 {
 	result->difference.alone = old->plan == now->plan;
-	return compare_plans(result, old, now) && (old->images == NULL || now->images == NULL || compare_chips(result, old, now));
+	return compare_plans(result, old, now) && compare_chips(result, old, now);
 }
 
 scanlatch_difference *scanlatch_compare(const char *old_name, const scanlatch_proofs *old, const char *new_name, const scanlatch_proofs *now)

@@ -41,6 +41,11 @@ static scanlatch_plan *read_set(const char *name, const char *bytes, size_t leng
 
 scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *messages)
 {
+	return scanlatch_plan_read_file_as(path, source_label(path), messages);
+}
+
+scanlatch_plan *scanlatch_plan_read_file_as(const char *path, const char *name, scanlatch_messages *messages)
+{
 	struct arena *arena = arena_create();
 	char *bytes;
 	size_t length;
@@ -48,7 +53,7 @@ scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *m
 	if (arena == NULL) {
 		report(messages, path, READ_MEMORY, 0, "", 0);
 	} else if (read_plan_file(arena, path, &bytes, &length, messages)) {
-		const struct source seen = {source_label(path), bytes, length};
+		const struct source seen = {name, bytes, length};
 		if (source_is_set(&seen))
 			plan = read_set(seen.name, bytes, length, messages);
 		else

@@ -3,18 +3,121 @@
 #include <inttypes.h>
 #include <string.h>
 
+#include "base/excerpt.h"
 #include "base/text.h"
 #include "view/figures.h"
+#include "view/proofs.h"
+
+static bool plan_differs(const struct plan_difference *plan)
+{
+	if (plan->comparison == NULL || !plan->comparison->same_meaning)
+		return true;
+	return plan->images != NULL && (plan->old_musts[0] != '\0' || plan->now_musts[0] != '\0');
+}
 
 bool difference_found(const struct difference *difference)
 {
 	for (size_t index = 0; index < difference->plan_count; index++)
-		if (difference->plans[index].comparison == NULL || !difference->plans[index].comparison->same_meaning)
-			return true;
-	for (size_t index = 0; index < difference->chip_count; index++)
-		if (difference->chips[index].fate != CHIP_STAYS)
+		if (plan_differs(&difference->plans[index]))
 			return true;
 	return false;
+}
+
+bool same_timelines(const struct difference *difference)
+{
+	for (size_t index = 0; index < difference->plan_count; index++)
+		if (difference->plans[index].comparison == NULL || !difference->plans[index].comparison->same_timeline)
+			return false;
+	return true;
+}
+
+bool same_images(const struct difference *difference)
+{
+	for (size_t index = 0; index < difference->chip_count; index++)
+		if (difference->chips[index].fate != CHIP_STAYS)
+			return false;
+	return true;
+}
+
+static size_t count_edits(const struct difference *difference)
+{
+	size_t count = 0;
+	for (size_t index = 0; index < difference->plan_count; index++)
+		count += difference->plans[index].comparison != NULL ? difference->plans[index].comparison->edits : 1;
+	return count;
+}
+
+void put_difference_headline(struct text *out, const struct difference *difference)
+{
+	const size_t edits = count_edits(difference);
+	text_put(out, difference->old_name);
+	if (strcmp(difference->old_name, difference->now_name) != 0)
+		text_printf(out, " to %s", difference->now_name);
+	text_put(out, ": ");
+	if (difference->alone) {
+		text_put(out, difference_found(difference) ? "the images do not do what the plan says" : "the images do what the plan says");
+	} else {
+		text_put(out, same_timelines(difference) ? "same timeline, " : "another timeline, ");
+		if (edits == 0)
+			text_put(out, "nothing changed");
+		else
+			text_put_count(out, edits, "change", "changes");
+		if (edits > 0 && !difference_found(difference))
+			text_put(out, " in words only");
+	}
+	text_put(out, same_images(difference) ? "; the images are the same bytes" : "; the images are not the same bytes");
+}
+
+struct fact musts_fact(const struct plan_difference *plan)
+{
+	return (struct fact){"musts", plan->old_musts[0] == '\0' ? "all hold, the frame closes" : plan->old_musts,
+	                     plan->now_musts[0] == '\0' ? "all hold, the frame closes" : plan->now_musts,
+	                     strcmp(plan->old_musts, plan->now_musts) == 0};
+}
+
+struct fact advice_fact(const struct plan_difference *plan)
+{
+	return (struct fact){"advice missed", plan->old_advice[0] == '\0' ? "none" : plan->old_advice,
+	                     plan->now_advice[0] == '\0' ? "none" : plan->now_advice, strcmp(plan->old_advice, plan->now_advice) == 0};
+}
+
+void put_chip_fate(struct text *out, const struct chip_difference *chip)
+{
+	if (chip->old_label != NULL)
+		text_printf(out, "was %s; ", chip->old_label);
+	switch (chip->fate) {
+	case CHIP_STAYS: text_put(out, "stays as it is"); break;
+	case CHIP_BURN: text_put(out, "burn it again, "); break;
+	case CHIP_OTHER_BYTES: break;
+	case CHIP_NEW: text_printf(out, "is new, burn its %zu bytes", chip->bytes); break;
+	case CHIP_GONE: text_put(out, "is not used any more"); break;
+	case CHIP_OTHER_SIZE: text_printf(out, "is another part, burn its %zu bytes", chip->bytes); break;
+	}
+	if (chip->fate == CHIP_BURN || chip->fate == CHIP_OTHER_BYTES)
+		text_printf(out, "%zu of %zu bytes differ, the first at 0x%zX", chip->differing, chip->bytes, chip->first);
+}
+
+const char *chips_advice(const struct difference *difference)
+{
+	for (size_t index = 0; index < difference->chip_count; index++)
+		if (difference->chips[index].fate == CHIP_OTHER_BYTES)
+			return "no chip must be burned again, for either side's do the same; but do not mix them: burn all that differ, or none";
+	return NULL;
+}
+
+void put_bank_numbers(struct text *out, const struct plan_difference *plan)
+{
+	text_put(out, plan->bank_count == 1 ? "bank" : "banks");
+	for (size_t index = 0; index < plan->bank_count; index++) {
+		size_t last = index;
+		while (last + 1 < plan->bank_count && plan->banks[last + 1] == plan->banks[last] + 1)
+			last++;
+		text_printf(out, "%s %" PRIu32, index == 0 ? "" : last + 1 == plan->bank_count ? " and" : ",", plan->banks[index]);
+		if (last > index + 1) {
+			text_printf(out, " to %" PRIu32, plan->banks[last]);
+			index = last;
+		}
+	}
 }
 
 // Words are made first, and wrapped when they are whole.
@@ -25,292 +128,125 @@ struct report {
 
 static void put_words(struct report *report, size_t indent)
 {
+	struct text printable = {0};
+	excerpt_put_printable(text_string(&report->words), report->words.length, &printable);
 	text_put_repeated(report->out, ' ', indent);
-	text_put_wrapped(report->out, text_string(&report->words), indent, indent + 2);
+	text_put_wrapped(report->out, text_string(&printable), indent, indent + 2);
 	text_put(report->out, "\n");
+	report->out->failed = report->out->failed || printable.failed;
+	text_release(&printable);
 	report->words.length = 0;
 	text_put(&report->words, "");
 }
 
-static size_t count_changes(const struct difference *difference)
+static void put_fact(struct report *report, const struct fact *fact)
 {
-	size_t count = 0;
-	for (size_t index = 0; index < difference->plan_count; index++)
-		count += difference->plans[index].comparison != NULL ? difference->plans[index].comparison->count : 1;
-	return count;
-}
-
-static bool same_timelines(const struct difference *difference)
-{
-	for (size_t index = 0; index < difference->plan_count; index++)
-		if (difference->plans[index].comparison == NULL || !difference->plans[index].comparison->same_timeline)
-			return false;
-	return true;
-}
-
-static bool same_bytes(const struct difference *difference)
-{
-	for (size_t index = 0; index < difference->chip_count; index++)
-		if (difference->chips[index].fate != CHIP_STAYS)
-			return false;
-	return true;
-}
-
-static void put_headline(struct text *words, const struct difference *difference)
-{
-	const size_t changes = count_changes(difference);
-	text_printf(words, "%s to %s: ", difference->old_name, difference->now_name);
-	if (!difference->alone) {
-		text_put(words, same_timelines(difference) ? "same timeline" : "another timeline");
-		text_put(words, changes == 0 ? ", nothing changed" : ", ");
-		if (changes > 0)
-			text_put_count(words, changes, "change", "changes");
-	} else {
-		text_put(words, "a plan and images");
-	}
-	if (difference->has_chips)
-		text_put(words, same_bytes(difference) ? "; the images are the same bytes" : "; the images are not the same bytes");
-}
-
-// Musts.
-
-static void put_musts(struct text *words, const struct plan_difference *plan)
-{
-	const bool held = plan->old_musts[0] == '\0', holds = plan->now_musts[0] == '\0';
-	if (held && holds)
-		text_put(words, "every must holds, before and after: the frame closes");
-	else if (holds)
-		text_printf(words, "every must holds now; before, these failed: %s", plan->old_musts);
-	else if (held)
-		text_printf(words, "musts that fail now, and did not before: %s", plan->now_musts);
+	text_printf(&report->words, "%s: %s", fact->what, fact->now);
+	if (fact->same)
+		text_put(&report->words, ", as before");
 	else
-		text_printf(words, "musts that fail now: %s; before: %s", plan->now_musts, plan->old_musts);
+		text_printf(&report->words, ", was %s", fact->old);
+	put_words(report, 2);
 }
 
-// Chips.
-
-static void put_chip(struct text *words, const struct chip_difference *chip)
+static void put_change(struct report *report, const struct comparison *comparison, const struct change *change)
 {
-	text_printf(words, "%s", chip->label);
-	switch (chip->fate) {
-	case CHIP_STAYS: text_put(words, " stays"); break;
-	case CHIP_BURN: text_printf(words, ": burn again, %zu of %zu bytes differ, from 0x%zX on", chip->differing, chip->bytes, chip->first); break;
-	case CHIP_NEW: text_printf(words, " is new: burn its %zu bytes", chip->bytes); break;
-	case CHIP_GONE: text_put(words, " is gone"); break;
-	case CHIP_OTHER_SIZE: text_printf(words, " is another part: burn its %zu bytes", chip->bytes); break;
+	text_put_change(&report->words, comparison, change);
+	put_words(report, 2);
+}
+
+// What the machine does: first what matters at the bench.
+static void put_plan_facts(struct report *report, const struct plan_difference *plan)
+{
+	const struct fact musts = musts_fact(plan), advice = advice_fact(plan);
+	const struct comparison *comparison = plan->comparison;
+	put_fact(report, &musts);
+	for (size_t index = 0; plan->images == NULL && index < comparison->fact_count; index++)
+		put_fact(report, &comparison->facts[index]);
+	for (size_t index = 0; index < comparison->count; index++)
+		if (comparison->changes[index].section == CHANGE_LIMITS)
+			put_change(report, comparison, &comparison->changes[index]);
+	if (!advice.same)
+		put_fact(report, &advice);
+}
+
+static void put_heading(struct report *report, const struct plan_difference *plan, const char *what)
+{
+	if (plan->bank_count == 0)
+		return;
+	text_put(&report->words, what);
+	put_bank_numbers(&report->words, plan);
+	put_words(report, 0);
+}
+
+static void put_facts(struct report *report, const struct plan_difference *plan)
+{
+	put_heading(report, plan, "");
+	if (plan->comparison != NULL) {
+		put_plan_facts(report, plan);
+		return;
 	}
+	text_printf(&report->words, "only the %s set has %s", plan->only, plan->bank_count == 1 ? "it" : "them");
+	put_words(report, 2);
 }
 
 static void put_chips(struct report *report, const struct difference *difference)
 {
-	if (!difference->has_chips)
-		return;
-	text_put(report->out, "chips to burn\n");
+	const char *advice = chips_advice(difference);
+	text_put(report->out, "chips\n");
 	for (size_t index = 0; index < difference->chip_count; index++) {
-		put_chip(&report->words, &difference->chips[index]);
+		text_printf(&report->words, "%s: ", difference->chips[index].label);
+		put_chip_fate(&report->words, &difference->chips[index]);
+		put_words(report, 2);
+	}
+	if (advice != NULL) {
+		text_put(&report->words, advice);
 		put_words(report, 2);
 	}
 }
 
-// Changes.
-
 static void put_changes(struct report *report, const struct comparison *comparison)
 {
-	unsigned section = CHANGE_SECTIONS;
+	unsigned section = CHANGE_LIMITS;
 	for (size_t index = 0; index < comparison->count; index++) {
 		const struct change *change = &comparison->changes[index];
+		if (change->section == CHANGE_LIMITS)
+			continue;
 		if (change->section != section)
 			text_printf(report->out, "%s\n", change_section_name(change->section));
 		section = change->section;
-		text_put_change(&report->words, comparison, change);
-		put_words(report, 2);
+		put_change(report, comparison, change);
 	}
+}
+
+// Why images do not do what the plan says.
+static void put_failures(struct text *out, const struct plan_difference *plan)
+{
+	for (enum proof_kind kind = PROOF_CLOSURE; plan->images != NULL && kind < PROOF_COUNT; kind++)
+		if (proof_is_must(kind) && plan->images->proof[kind].verdict == VERDICT_FAIL)
+			view_proof(out, plan->images, kind, false);
 }
 
 static void put_plan(struct report *report, const struct plan_difference *plan)
 {
-	if (plan->banks != NULL)
-		text_printf(report->out, "\n%s\n", plan->banks);
-	if (plan->only != NULL) {
-		text_put(&report->words, plan->only);
-		put_words(report, 2);
-	}
-	if (plan->old_musts != NULL && plan->now_musts != NULL) {
-		put_musts(&report->words, plan);
-		put_words(report, 0);
-	}
-	if (plan->comparison != NULL)
-		put_changes(report, plan->comparison);
+	if (plan->comparison == NULL || (plan->bank_count > 0 && plan->comparison->edits == 0 && plan->images == NULL))
+		return;
+	if (plan->images == NULL || plan->old_musts[0] != '\0' || plan->now_musts[0] != '\0')
+		put_heading(report, plan, plan->images == NULL ? "changes in " : "");
+	put_changes(report, plan->comparison);
+	put_failures(report->out, plan);
 }
 
 void view_difference(struct text *out, const struct difference *difference)
 {
 	struct report report = {out, {0}};
-	put_headline(&report.words, difference);
+	put_difference_headline(&report.words, difference);
 	put_words(&report, 0);
 	for (size_t index = 0; index < difference->plan_count; index++)
-		put_plan(&report, &difference->plans[index]);
+		put_facts(&report, &difference->plans[index]);
 	put_chips(&report, difference);
+	for (size_t index = 0; index < difference->plan_count; index++)
+		put_plan(&report, &difference->plans[index]);
 	out->failed = out->failed || report.words.failed;
 	text_release(&report.words);
-}
-
-// Markdown: characters that would end a cell or begin markup are escaped.
-static void put_cell(struct text *out, const char *words)
-{
-	static const char marks[] = "\\`*_{}[]<>#|";
-	for (; words != NULL && *words != '\0'; words++) {
-		if (strchr(marks, *words) != NULL)
-			text_put(out, "\\");
-		text_put_bytes(out, words, 1);
-	}
-}
-
-static void put_row(struct text *out, const struct comparison *comparison, const struct change *change)
-{
-	struct text words = {0};
-	text_put_change(&words, comparison, change);
-	text_printf(out, "| %s | ", change_section_name(change->section));
-	put_cell(out, text_string(&words));
-	text_put(out, " |\n");
-	out->failed = out->failed || words.failed;
-	text_release(&words);
-}
-
-static void put_plan_table(struct text *out, const struct plan_difference *plan)
-{
-	if (plan->banks != NULL)
-		text_printf(out, "### %s\n\n", plan->banks);
-	if (plan->only != NULL)
-		text_printf(out, "%s\n\n", plan->only);
-	if (plan->old_musts != NULL && plan->now_musts != NULL) {
-		put_musts(out, plan);
-		text_put(out, ".\n\n");
-	}
-	if (plan->comparison == NULL || plan->comparison->count == 0)
-		return;
-	text_put(out, "| | change |\n|---|---|\n");
-	for (size_t index = 0; index < plan->comparison->count; index++)
-		put_row(out, plan->comparison, &plan->comparison->changes[index]);
-	text_put(out, "\n");
-}
-
-void view_difference_markdown(struct text *out, const struct difference *difference)
-{
-	struct text words = {0};
-	put_headline(&words, difference);
-	text_put(out, "**");
-	put_cell(out, text_string(&words));
-	text_put(out, "**\n\n");
-	for (size_t index = 0; index < difference->plan_count; index++)
-		put_plan_table(out, &difference->plans[index]);
-	if (difference->has_chips)
-		text_put(out, "| chip | |\n|---|---|\n");
-	for (size_t index = 0; index < difference->chip_count; index++) {
-		words.length = 0;
-		put_chip(&words, &difference->chips[index]);
-		const size_t label = strlen(difference->chips[index].label);
-		text_put(out, "| ");
-		put_cell(out, difference->chips[index].label);
-		text_put(out, " | ");
-		put_cell(out, text_string(&words) + label + (text_string(&words)[label] == ':' ? 2 : 1));
-		text_put(out, " |\n");
-	}
-	out->failed = out->failed || words.failed;
-	text_release(&words);
-}
-
-static json_t *change_json(const struct comparison *comparison, const struct change *change)
-{
-	json_t *object = json_object();
-	struct text words = {0};
-	text_put_change(&words, comparison, change);
-	json_put(&object, "section", json_string(change_section_name(change->section)));
-	json_put(&object, "kind", json_string(change->kind));
-	if (change->lines != NULL)
-		json_put(&object, "lines", json_string(change->lines));
-	json_put(&object, "what", json_string(change->what));
-	if (change->old != NULL)
-		json_put(&object, "old", json_string(change->old));
-	if (change->now != NULL)
-		json_put(&object, "new", json_string(change->now));
-	if (change->shifted) {
-		json_put(&object, "cells", json_integer(change->cells));
-		json_put(&object, "ticks", json_sprintf("%" PRId64, change->ticks));
-	}
-	json_put(&object, "words", words.failed ? NULL : json_string(text_string(&words)));
-	text_release(&words);
-	return object;
-}
-
-// A list of names that are joined by ", ".
-static json_t *names_json(const char *names)
-{
-	json_t *list = json_array();
-	while (*names != '\0') {
-		const size_t length = strcspn(names, ",");
-		json_append(&list, json_stringn(names, length));
-		names += length;
-		names += strspn(names, ", ");
-	}
-	return list;
-}
-
-static json_t *plan_json(const struct plan_difference *plan)
-{
-	json_t *object = json_object(), *changes = json_array();
-	if (plan->banks != NULL)
-		json_put(&object, "banks", json_string(plan->banks));
-	if (plan->only != NULL)
-		json_put(&object, "only", json_string(plan->only));
-	if (plan->old_musts != NULL && plan->now_musts != NULL) {
-		json_t *musts = json_object();
-		json_put(&musts, "old", names_json(plan->old_musts));
-		json_put(&musts, "new", names_json(plan->now_musts));
-		json_put(&object, "musts", musts);
-	}
-	if (plan->comparison != NULL) {
-		json_put(&object, "same_timeline", json_boolean(plan->comparison->same_timeline));
-		for (size_t index = 0; index < plan->comparison->count; index++)
-			json_append(&changes, change_json(plan->comparison, &plan->comparison->changes[index]));
-	}
-	json_put(&object, "changes", changes);
-	return object;
-}
-
-static json_t *chip_json(const struct chip_difference *chip)
-{
-	static const char *const fates[] = {
-		[CHIP_STAYS] = "stays", [CHIP_BURN] = "burn", [CHIP_NEW] = "new", [CHIP_GONE] = "gone", [CHIP_OTHER_SIZE] = "other size",
-	};
-	json_t *object = json_object();
-	json_put(&object, "label", json_string(chip->label));
-	json_put(&object, "fate", json_string(fates[chip->fate]));
-	json_put(&object, "bytes", json_integer((json_int_t)chip->bytes));
-	if (chip->fate == CHIP_BURN) {
-		json_put(&object, "differing", json_integer((json_int_t)chip->differing));
-		json_put(&object, "first", json_integer((json_int_t)chip->first));
-	}
-	return object;
-}
-
-json_t *view_difference_json(const struct difference *difference)
-{
-	json_t *object = json_object(), *plans = json_array(), *chips = json_array();
-	json_put(&object, "old", json_string(difference->old_name));
-	json_put(&object, "new", json_string(difference->now_name));
-	json_put(&object, "differs", json_boolean(difference_found(difference)));
-	json_put(&object, "same_timeline", json_boolean(same_timelines(difference)));
-	if (difference->has_chips)
-		json_put(&object, "same_bytes", json_boolean(same_bytes(difference)));
-	for (size_t index = 0; index < difference->plan_count; index++)
-		json_append(&plans, plan_json(&difference->plans[index]));
-	for (size_t index = 0; index < difference->chip_count; index++)
-		json_append(&chips, chip_json(&difference->chips[index]));
-	json_put(&object, "plans", plans);
-	if (difference->has_chips)
-		json_put(&object, "chips", chips);
-	else
-		json_decref(chips);
-	return object;
 }

@@ -289,6 +289,14 @@ static bool put_other_lines(struct text *out, const struct limits_result *limits
 	return true;
 }
 
+void put_limit_measured(struct text *out, const struct proofs *proofs, enum limit_item item)
+{
+	put_interval(out, item, proofs->limits.measurement->items[item].values);
+	put_unit(out, item);
+	text_put(out, ", allowed ");
+	put_allowed(out, limit_at(proofs, item, plan_of_proofs(proofs)->grade));
+}
+
 void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_item item)
 {
 	const struct limit *limit = limit_at(proofs, item, plan_of_proofs(proofs)->grade);
