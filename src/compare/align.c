@@ -54,16 +54,17 @@ static void fill_table(const struct middle *middle)
 		}
 }
 
+// Of equal sums, the one that pairs what comes first.
 static void walk_table(const struct middle *middle, struct alignment *alignment)
 {
 	for (size_t row = 0, column = 0; row < middle->rows && column < middle->columns;) {
-		const uint32_t best = *best_at(middle, row, column);
-		if (best == *best_at(middle, row + 1, column))
-			row++;
-		else if (best == *best_at(middle, row, column + 1))
-			column++;
-		else
+		const uint32_t best = *best_at(middle, row, column), worth = worth_at(middle, row, column);
+		if (worth > 0 && best == worth + *best_at(middle, row + 1, column + 1))
 			pair(alignment, middle->start + row++, middle->start + column++);
+		else if (best == *best_at(middle, row + 1, column))
+			row++;
+		else
+			column++;
 	}
 }
 

@@ -145,6 +145,6 @@ void compare_blocks(struct comparing *comparing)
 	if (align_lists(comparing, worth_of_blocks, 3, &frames, &frames.runs))
 		tell_blocks(&frames);
 	else if (!comparing->failed)
-		add_block(comparing, "blocks", "blocks", keep_words(comparing, "%zu others", frames.old.count),
+		add_block(comparing, "blocks", "blocks", keep_words(comparing, "%zu", frames.old.count),
 		          keep_words(comparing, "%zu, too many to compare one by one", frames.now.count));
 }

@@ -74,13 +74,23 @@ static int64_t more_stretched(const struct line_pair *pair, size_t old)
 	return now == NONE ? 0 : (int64_t)pair->now_laid->regions[now].stretched - (int64_t)pair->old_laid->regions[old].stretched;
 }
 
-static void add_stretched(const struct line_pair *pair, size_t old)
+// What the line takes longer by its stretched cells alone; NULL where more has changed.
+static const char *longer_words(const struct line_pair *pair)
+{
+	const int64_t ticks = pair->now_laid->ticks - pair->old_laid->ticks, size = ticks < 0 ? -ticks : ticks;
+	if (!pair->comparing->same_clock || pair->now_laid->cells != pair->old_laid->cells || ticks == 0)
+		return NULL;
+	return keep_words(pair->comparing, "the line is %" PRId64 " tick%s %s", size, size == 1 ? "" : "s", ticks < 0 ? "shorter" : "longer");
+}
+
+static void add_stretched(const struct line_pair *pair, size_t old, const char *also)
 {
 	struct comparing *comparing = pair->comparing;
 	const uint32_t before = pair->old_laid->regions[old].stretched, after = pair->now_laid->regions[pair->regions.now_of[old]].stretched;
 	add_of_line(pair, (struct change){.section = CHANGE_LINES, .kind = "stretched",
 	                                  .what = keep_words(comparing, "stretched cells of \"%s\"", now_name(pair, old)),
-	                                  .old = keep_words(comparing, "%" PRIu32, before), .now = keep_words(comparing, "%" PRIu32, after)});
+	                                  .old = keep_words(comparing, "%" PRIu32, before), .now = keep_words(comparing, "%" PRIu32, after),
+	                                  .also = also});
 }
 
 static void add_stretched_moved(const struct line_pair *pair, size_t from, size_t to, int64_t cells)
@@ -110,7 +120,7 @@ static void compare_stretched(const struct line_pair *pair)
 	}
 	for (size_t old = 0; count > 0 && old < pair->old_line->region_count; old++)
 		if (more_stretched(pair, old) != 0)
-			add_stretched(pair, old);
+			add_stretched(pair, old, count == 1 ? longer_words(pair) : NULL);
 }
 
 // Holds.
@@ -168,7 +178,7 @@ static void compare_pair(struct line_pair *pair)
 {
 	if (!align_lists(pair->comparing, worth_of_regions, WORTH_WHOLE, pair, &pair->regions)) {
 		add_of_line(pair, (struct change){.section = CHANGE_LINES, .kind = "regions", .what = "regions",
-		                                  .old = keep_words(pair->comparing, "%zu others", pair->regions.old_count),
+		                                  .old = keep_words(pair->comparing, "%zu", pair->regions.old_count),
 		                                  .now = keep_words(pair->comparing, "%zu, too many to compare one by one", pair->regions.now_count)});
 		return;
 	}

@@ -91,10 +91,14 @@ static bool compare_members(struct arena *arena, const struct side *old, const s
 		return true;
 	}
 	plan->comparison = comparison_create(old->plan->members[before].timeline, now->plan->members[after].timeline);
-	// Of the two, one was made from the plan; whichever was read is of interest.
-	if (old->plan == now->plan)
-		plan->images = (now->images->members[after].table == NULL ? now : old)->proofs->proofs[after];
-	return plan->comparison != NULL && name_failures(arena, old, before, now, after, plan);
+	if (plan->comparison == NULL || !name_failures(arena, old, before, now, after, plan))
+		return false;
+	if (old->plan == now->plan) {
+		const bool old_was_read = old->images->members[before].table == NULL;
+		plan->images = (old_was_read ? old : now)->proofs->proofs[after];
+		plan->images_musts = old_was_read ? plan->old_musts : plan->now_musts;
+	}
+	return true;
 }
 
 static bool compare_plans(struct scanlatch_difference *result, const struct side *old, const struct side *now)

@@ -12,7 +12,7 @@ static bool plan_differs(const struct plan_difference *plan)
 {
 	if (plan->comparison == NULL || !plan->comparison->same_meaning)
 		return true;
-	return plan->images != NULL && (plan->old_musts[0] != '\0' || plan->now_musts[0] != '\0');
+	return plan->images != NULL && plan->images_musts[0] != '\0';
 }
 
 bool difference_found(const struct difference *difference)
@@ -68,11 +68,16 @@ void put_difference_headline(struct text *out, const struct difference *differen
 	text_put(out, same_images(difference) ? "; the images are the same bytes" : "; the images are not the same bytes");
 }
 
+static const char *musts_words(const char *failed)
+{
+	return failed[0] == '\0' ? "all hold, the frame closes" : failed;
+}
+
 struct fact musts_fact(const struct plan_difference *plan)
 {
-	return (struct fact){"musts", plan->old_musts[0] == '\0' ? "all hold, the frame closes" : plan->old_musts,
-	                     plan->now_musts[0] == '\0' ? "all hold, the frame closes" : plan->now_musts,
-	                     strcmp(plan->old_musts, plan->now_musts) == 0};
+	if (plan->images != NULL)
+		return (struct fact){"musts in the images", NULL, musts_words(plan->images_musts), false};
+	return (struct fact){"musts", musts_words(plan->old_musts), musts_words(plan->now_musts), strcmp(plan->old_musts, plan->now_musts) == 0};
 }
 
 struct fact advice_fact(const struct plan_difference *plan)
@@ -120,6 +125,8 @@ void put_bank_numbers(struct text *out, const struct plan_difference *plan)
 	}
 }
 
+#define WRAPPED_INDENT 4
+
 // Words are made first, and wrapped when they are whole.
 struct report {
 	struct text *out;
@@ -131,7 +138,7 @@ static void put_words(struct report *report, size_t indent)
 	struct text printable = {0};
 	excerpt_put_printable(text_string(&report->words), report->words.length, &printable);
 	text_put_repeated(report->out, ' ', indent);
-	text_put_wrapped(report->out, text_string(&printable), indent, indent + 2);
+	text_put_wrapped(report->out, text_string(&printable), indent, WRAPPED_INDENT);
 	text_put(report->out, "\n");
 	report->out->failed = report->out->failed || printable.failed;
 	text_release(&printable);
@@ -144,7 +151,7 @@ static void put_fact(struct report *report, const struct fact *fact)
 	text_printf(&report->words, "%s: %s", fact->what, fact->now);
 	if (fact->same)
 		text_put(&report->words, ", as before");
-	else
+	else if (fact->old != NULL)
 		text_printf(&report->words, ", was %s", fact->old);
 	put_words(report, 2);
 }
@@ -166,7 +173,7 @@ static void put_plan_facts(struct report *report, const struct plan_difference *
 	for (size_t index = 0; index < comparison->count; index++)
 		if (comparison->changes[index].section == CHANGE_LIMITS)
 			put_change(report, comparison, &comparison->changes[index]);
-	if (!advice.same)
+	if (!advice.same && plan->images == NULL)
 		put_fact(report, &advice);
 }
 
@@ -231,7 +238,7 @@ static void put_plan(struct report *report, const struct plan_difference *plan)
 {
 	if (plan->comparison == NULL || (plan->bank_count > 0 && plan->comparison->edits == 0 && plan->images == NULL))
 		return;
-	if (plan->images == NULL || plan->old_musts[0] != '\0' || plan->now_musts[0] != '\0')
+	if (plan->images == NULL || plan->images_musts[0] != '\0')
 		put_heading(report, plan, plan->images == NULL ? "changes in " : "");
 	put_changes(report, plan->comparison);
 	put_failures(report->out, plan);

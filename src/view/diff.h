@@ -34,7 +34,8 @@ struct plan_difference {
 	const char *only;              // then: which, in words
 	const char *old_musts, *now_musts;   // names of proofs that fail, of musts and of advice, joined by ", "; "" if none
 	const char *old_advice, *now_advice;
-	const struct proofs *images;   // where a plan is compared with images: their proofs; otherwise NULL
+	const struct proofs *images;   // where a plan is compared with images that were read: their proofs; otherwise NULL
+	const char *images_musts;      // then: of old_musts and now_musts, those of the images
 };
 
 struct difference {
@@ -72,7 +73,7 @@ json_t *view_difference_json(const struct difference *difference);
 
 // "a.yaml to b.yaml: another timeline, 2 changes; …".
 void put_difference_headline(struct text *out, const struct difference *difference);
-// Each as a fact: see struct fact.
+// Each as a fact: see struct fact. Of a plan and images, `old` is NULL.
 struct fact musts_fact(const struct plan_difference *plan);
 struct fact advice_fact(const struct plan_difference *plan);
 // "burn it again, …". What follows on all chips, in words; NULL if nothing does.

@@ -52,7 +52,7 @@ static void put_fact(struct page *page, const struct fact *fact)
 	text_put(&page->words, fact->now);
 	if (fact->same)
 		text_put(&page->words, ", as before");
-	else
+	else if (fact->old != NULL)
 		text_printf(&page->words, ", was %s", fact->old);
 	end_words(page, " |\n");
 }
@@ -93,7 +93,7 @@ static void put_facts(struct page *page, const struct plan_difference *plan)
 	for (size_t index = 0; index < comparison->count; index++)
 		if (comparison->changes[index].section == CHANGE_LIMITS)
 			put_change(page, comparison, &comparison->changes[index]);
-	if (!advice.same)
+	if (!advice.same && plan->images == NULL)
 		put_fact(page, &advice);
 	text_put(page->out, "\n");
 }

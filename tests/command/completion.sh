@@ -22,7 +22,7 @@ cd "$folder" || exit 1
 touch tide.yaml tide.yml tide.txt tide.rom0.bin tide.rom0.hex 'two words.yaml'
 mkdir images
 
-same 'commands' $'build\ncheck\nlist\nprove' "$(offered '')"
+same 'commands' $'build\ncheck\ndiff\nlist\nprove' "$(offered '')"
 same 'a command begun' 'prove' "$(offered pr)"
 same 'plans and folders' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered check '')"
 same 'images too, to be proved' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yaml\ntide.yml\ntwo words.yaml' \
@@ -42,7 +42,7 @@ same 'nothing that is not there' '' "$(offered check x)"
 cd "$root" || exit 1
 long_options='(^|[^-A-Za-z])--[a-z]+(-[a-z]+)*'
 page=$(sed 's/\\-/-/g; s/\\f.//g' src/command/scanlatch.1)
-for command in check build prove list; do
+for command in check build prove diff list; do
 	options=$("$SCANLATCH" "$command" --help | grep -oE -- "$long_options" | grep -oE -- '--[a-z-]+' | sort -u)
 	same "$command: completion offers the options that its help names" "$options" "$(offered "$command" --)"
 	for option in $options; do

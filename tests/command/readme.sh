@@ -61,7 +61,9 @@ holds "mistakes look as the README shows" compare 4
 
 holds "two stages look as the README shows" compare 5
 holds "a set looks as the README shows" compare 6
-same "the README shows six commands" "$(block 7)" ""
+holds "the README moves a burst" eval "$(shell_block 5)"
+holds "diff shows what the README shows" compare 7
+same "the README shows seven commands" "$(block 8)" ""
 
 # A block of YAML that is a plan's or a set's own text: each of its lines stands there, but for what a comment says.
 yaml_block() { awk -v wanted="$1" '/^```/ { if (inside) inside = 0; else if ($0 == "```yaml") inside = ++count == wanted; next } inside' "$readme"; }
