@@ -14,7 +14,7 @@
 
 struct scanlatch_messages {
 	struct diagnostics *diagnostics;
-	struct arena *names;       // sources that messages quote: plans and the names of image files
+	struct arena *names;       // what messages quote: plans, names of image files, catalogues
 };
 
 // A plan among those of a set, or a plan alone.
@@ -26,7 +26,7 @@ struct member {
 };
 
 struct scanlatch_plan {
-	struct arena *arena;           // the catalogue and what stands here
+	struct arena *arena;           // what stands here
 	const struct source *source;   // owned by the messages that the plan was read with
 	struct plan *plan;             // the first member's: all have its chips, wiring and word
 	struct plan_set *set;          // which owns the plans; NULL for a plan alone
@@ -80,7 +80,7 @@ bool read_plan_file(struct arena *arena, const char *path, char **bytes, size_t 
 
 // A set and the plans of its listed banks, which agree.
 struct plan_set {
-	struct arena *arena;       // the catalogue and what stands here
+	struct arena *arena;       // what stands here
 	struct set *set;
 	struct plan **plans;       // [set->bank_count]
 };

@@ -59,13 +59,14 @@ static bool lay_out(scanlatch_plan *plan, struct diagnostics *diagnostics)
 	return good;
 }
 
-static bool load_plan(scanlatch_plan *plan, struct diagnostics *diagnostics)
+// The catalogue stays with the messages: one that memory did not suffice for is what they quote.
+static bool load_plan(scanlatch_plan *plan, scanlatch_messages *messages)
 {
-	const struct catalogue *catalogue = catalogue_load(plan->arena, diagnostics);
+	const struct catalogue *catalogue = catalogue_load(messages->names, messages->diagnostics);
 	if (catalogue == NULL)
 		return false;
-	plan->members[0].plan = plan_read(plan->source, catalogue, diagnostics);
-	return plan->members[0].plan != NULL && lay_out(plan, diagnostics);
+	plan->members[0].plan = plan_read(plan->source, catalogue, messages->diagnostics);
+	return plan->members[0].plan != NULL && lay_out(plan, messages->diagnostics);
 }
 
 scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t length, scanlatch_messages *messages)
@@ -77,7 +78,7 @@ scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t 
 		return NULL;
 	}
 	plan->source = source;
-	if (load_plan(plan, messages->diagnostics))
+	if (load_plan(plan, messages))
 		return plan;
 	scanlatch_plan_destroy(plan);
 	return NULL;
