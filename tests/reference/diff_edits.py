@@ -118,6 +118,15 @@ def region_removed_with_room(plan, chance):
 		also=f'"back porch" is {burst["cells"]} cells longer')]
 
 
+def region_removed_far_from_room(plan, chance):
+	line = pick_line(plan, chance, ("picture", "border"))
+	gone = line["regions"].pop(1)
+	first = line["regions"][0]["cells"]
+	line["regions"][2]["cells"] += gone["cells"]
+	return [change("region-removed", '"breezeway"', lines=[line["name"]], old=f"{gone['cells']} cells from cell {first}, asserts blank",
+		also=f'"back porch" is {gone["cells"]} cells longer, "burst" comes {gone["cells"]} cells earlier')]
+
+
 def region_removed_with_line(plan, chance):
 	line = pick_line(plan, chance, ("picture", "border"))
 	burst = line["regions"].pop(2)
@@ -490,7 +499,7 @@ EDITS = {
 	"region-moved": region_moved, "regions-moved": regions_moved, "widened-with-line": widened_with_line,
 	"shorter-with-line": shorter_with_line, "region-added-with-room": region_added_with_room,
 	"region-added-far-from-room": region_added_far_from_room, "region-added-with-line": region_added_with_line,
-	"region-removed-with-room": region_removed_with_room, "region-removed-with-line": region_removed_with_line,
+	"region-removed-with-room": region_removed_with_room, "region-removed-far-from-room": region_removed_far_from_room, "region-removed-with-line": region_removed_with_line,
 	"region-renamed": region_renamed, "signal-asserted": signal_asserted, "signal-not-asserted": signal_not_asserted,
 	"signal-added": signal_added, "signal-removed": signal_removed, "signal-renamed": signal_renamed,
 	"signal-inverted": signal_property("active", "high", "active {}".format),
