@@ -42,7 +42,7 @@ int command_prove(int argument_count, char **arguments);
 
 // Long options without a short one: values above any character.
 enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING, OPTION_GIT,
-       OPTION_MARKDOWN };
+       OPTION_MARKDOWN, OPTION_NEAR };
 
 // The options that every command has, for its table.
 #define COMMON_LONG_OPTIONS                                                                                                \

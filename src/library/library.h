@@ -66,6 +66,9 @@ bool images_complete(const scanlatch_images *images, const char *folder, scanlat
 // Fills the chips from the tables of all members, each in its banks. False after reporting; then members disagree, or memory is out.
 bool banks_fill(scanlatch_images *images, scanlatch_messages *messages);
 
+// Makes images of a plan. `preferences`: for each member the states that its cells should keep; NULL: none. NULL after reporting.
+scanlatch_images *images_make(const scanlatch_plan *plan, const struct preference *const *preferences, scanlatch_messages *messages);
+
 // What messages call a file: its path, or "standard input" for "-". Cannot fail.
 const char *source_label(const char *file);
 
