@@ -4,7 +4,7 @@
 #include "near/near.h"
 
 #define NO_CELL UINT32_MAX
-#define MOST_TABLE 1000000u          // pairs of runs
+#define MOST_TABLE 4000000u          // pairs of lines, or of runs of lines that show the same
 #define MOST_SPANS 1000u             // of a line, if its cells are to be matched by what they show
 #define MOST_WORK ((uint64_t)1 << 28) // cells that are looked at to weigh them
 
@@ -14,10 +14,11 @@ struct piece {
 	uint64_t hash;       // of what its cells show
 };
 
-// Pieces that follow each other and show the same.
+// Pieces that follow each other and show the same. Where there are not too many pieces, they are aligned one by one, each a run of its own.
 struct run {
 	uint32_t first;      // piece
 	uint32_t count;
+	uint32_t shows;      // number of what it shows: as its neighbours, if they show the same
 };
 
 // Cells of a line that follow each other and show the same.
@@ -33,6 +34,7 @@ struct side {
 	uint32_t piece_count;
 	struct run *runs;
 	uint32_t run_count;
+	uint32_t shows_count;
 	uint32_t longest;    // cells of a piece
 };
 
@@ -40,11 +42,13 @@ struct near {
 	struct arena *arena;
 	enum near_way way;
 	uint32_t *matched;   // [longest new line]: cells of an old line that those of a new one are, or NO_CELL
+	uint32_t matched_old, matched_now; // what these lines show
 	struct span *old_spans, *now_spans; // [MOST_SPANS]
 	uint32_t *table;     // [MOST_SPANS + 1][MOST_SPANS + 1]
 	const struct timeline *timeline;
 	const struct old_frame *old_frame;
 	struct side old, now;
+	uint32_t *common;    // [old.shows_count][now.shows_count]: cells that they have in common
 	uint32_t *states;    // [cell_count]
 	uint32_t *best;      // [line types]: cells that the best line of the type so far has in common with an old one, plus one
 	uint32_t *first;     // [line types]: the first cell of the first line of the type
@@ -124,14 +128,18 @@ static bool cut(struct near *near)
 	       cut_at_edges(near, &near->now, near->timeline->cell_count, signal);
 }
 
-static bool collect_runs(struct near *near, struct side *side)
+// `joined`: neighbours that show the same are one run.
+static bool collect_runs(struct near *near, struct side *side, bool joined)
 {
 	side->runs = arena_array(near->arena, side->piece_count, sizeof *side->runs);
+	side->run_count = side->shows_count = 0;
 	for (uint32_t piece = 0; side->runs != NULL && piece < side->piece_count; piece++) {
-		if (piece > 0 && side->pieces[piece].hash == side->pieces[piece - 1].hash)
+		const bool same = piece > 0 && side->pieces[piece].hash == side->pieces[piece - 1].hash;
+		side->shows_count += !same;
+		if (same && joined)
 			side->runs[side->run_count - 1].count++;
 		else
-			side->runs[side->run_count++] = (struct run){piece, 1};
+			side->runs[side->run_count++] = (struct run){piece, 1, side->shows_count - 1};
 	}
 	return side->runs != NULL;
 }
@@ -283,14 +291,36 @@ static void pair_line(struct near *near, const struct piece *old, const struct p
 	prefer(near, old, now, near->first[type]);
 }
 
-static uint64_t worth(const struct near *near, uint32_t old, uint32_t now)
+static uint64_t worth(const struct near *near, size_t old, size_t now)
 {
 	const struct run *before = &near->old.runs[old], *after = &near->now.runs[now];
-	const uint32_t common = count_common(near, &near->old.pieces[before->first], &near->now.pieces[after->first]);
+	const uint32_t common = near->common[(size_t)before->shows * near->now.shows_count + after->shows];
 	return ((uint64_t)common + 1) * (before->count < after->count ? before->count : after->count);
 }
 
-// All lines of a run are alike, so that cells are matched once.
+// The first run that shows what a number stands for.
+static const struct piece *piece_showing(const struct side *side, uint32_t *run, uint32_t shows)
+{
+	while (side->runs[*run].shows != shows)
+		(*run)++;
+	return &side->pieces[side->runs[*run].first];
+}
+
+static bool compare_shown(struct near *near)
+{
+	near->common = arena_array(near->arena, (size_t)near->old.shows_count * near->now.shows_count, sizeof *near->common);
+	uint32_t old_run = 0;
+	for (uint32_t old = 0; near->common != NULL && old < near->old.shows_count; old++) {
+		const struct piece *before = piece_showing(&near->old, &old_run, old);
+		uint32_t now_run = 0;
+		for (uint32_t now = 0; now < near->now.shows_count; now++)
+			near->common[(size_t)old * near->now.shows_count + now] =
+				count_common(near, before, piece_showing(&near->now, &now_run, now));
+	}
+	return near->common != NULL;
+}
+
+// Of lines that are alike, cells are matched once.
 static void pair_runs(struct near *near, uint32_t old, uint32_t now)
 {
 	const struct run *before = &near->old.runs[old], *after = &near->now.runs[now];
@@ -301,38 +331,36 @@ static void pair_runs(struct near *near, uint32_t old, uint32_t now)
 			pair_line(near, old_piece, now_piece, after->first + line);
 			continue;
 		}
-		if (line == 0)
+		if (before->shows != near->matched_old || after->shows != near->matched_now)
 			match_cells(near, old_piece, now_piece);
+		near->matched_old = before->shows;
+		near->matched_now = after->shows;
 		prefer(near, old_piece, now_piece, now_piece->first);
 	}
 }
 
-// The alignment of runs whose worth sums to the most, by the classic table.
+// The alignment of runs whose worth sums to the most, by the classic table; of equal ones, that which pairs what comes first.
 static bool align_runs(struct near *near)
 {
 	const size_t rows = near->old.run_count, columns = near->now.run_count, width = columns + 1;
-	uint64_t *best = arena_array(near->arena, (rows + 1) * width, sizeof *best);
-	uint64_t *pairs = arena_array(near->arena, rows * columns, sizeof *pairs);
-	if (best == NULL || pairs == NULL)
-		return false;
-	for (size_t row = rows; row-- > 0;)
+	uint64_t *best = compare_shown(near) ? arena_array(near->arena, (rows + 1) * width, sizeof *best) : NULL;
+	for (size_t row = rows; best != NULL && row-- > 0;)
 		for (size_t column = columns; column-- > 0;) {
 			uint64_t *here = &best[row * width + column];
+			const uint64_t paired = worth(near, row, column) + here[width + 1];
 			*here = here[1] > here[width] ? here[1] : here[width];
-			pairs[row * columns + column] = worth(near, (uint32_t)row, (uint32_t)column);
-			if (pairs[row * columns + column] + here[width + 1] > *here)
-				*here = pairs[row * columns + column] + here[width + 1];
+			*here = paired > *here ? paired : *here;
 		}
-	for (size_t row = 0, column = 0; row < rows && column < columns;) {
+	for (size_t row = 0, column = 0; best != NULL && row < rows && column < columns;) {
 		const uint64_t *here = &best[row * width + column];
-		if (*here == pairs[row * columns + column] + here[width + 1])
+		if (*here == worth(near, row, column) + here[width + 1])
 			pair_runs(near, (uint32_t)row++, (uint32_t)column++);
 		else if (*here == here[width])
 			row++;
 		else
 			column++;
 	}
-	return true;
+	return best != NULL;
 }
 
 // Where lines are too many and too different to be weighed: by their order.
@@ -352,9 +380,9 @@ static void pair_in_order(struct near *near)
 
 static bool can_weigh(const struct near *near)
 {
-	const uint64_t pairs = (uint64_t)near->old.run_count * near->now.run_count;
+	const uint64_t shown = (uint64_t)near->old.shows_count * near->now.shows_count;
 	const uint32_t longest = near->old.longest > near->now.longest ? near->old.longest : near->now.longest;
-	return pairs <= MOST_TABLE && pairs * (longest + (uint64_t)1) <= MOST_WORK;
+	return (uint64_t)near->old.run_count * near->now.run_count <= MOST_TABLE && shown * (longest + (uint64_t)1) <= MOST_WORK;
 }
 
 static const struct preference *keep(struct near *near)
@@ -384,6 +412,7 @@ static bool begin(struct near *near, struct arena *arena, const struct timeline 
 static bool begin_matching(struct near *near)
 {
 	near->matched = arena_array(near->arena, near->now.longest, sizeof *near->matched);
+	near->matched_old = near->matched_now = UINT32_MAX;
 	if (near->way != NEAR_SHOWN)
 		return near->matched != NULL;
 	near->old_spans = arena_array(near->arena, MOST_SPANS, sizeof *near->old_spans);
@@ -394,7 +423,10 @@ static bool begin_matching(struct near *near)
 
 static bool pair_lines(struct near *near)
 {
-	if (!cut(near) || !collect_runs(near, &near->old) || !collect_runs(near, &near->now) || !begin_matching(near))
+	if (!cut(near) || !begin_matching(near))
+		return false;
+	const bool joined = (uint64_t)near->old.piece_count * near->now.piece_count > MOST_TABLE;
+	if (!collect_runs(near, &near->old, joined) || !collect_runs(near, &near->now, joined))
 		return false;
 	if (can_weigh(near))
 		return align_runs(near);

@@ -127,7 +127,7 @@ static bool keep_start(struct solver *solver, struct faults *faults)
 {
 	const uint32_t *preferred = solver->assignment.preferred;
 	struct faults ignored = {.count = 0};
-	const bool kept = preferred != NULL && preferred[0] != NO_STATE && attempt_start(solver, true, preferred[0], &ignored);
+	const bool kept = preferred != NULL && preferred[0] <= solver->constraints->state_mask && attempt_start(solver, true, preferred[0], &ignored);
 	faults->memory_out = faults->memory_out || ignored.memory_out;
 	return kept;
 }

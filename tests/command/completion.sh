@@ -30,6 +30,7 @@ same 'images too, to be proved' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yam
 same 'a blank in a name' 'two words.yaml' "$(offered check tw)"
 same 'folders to write to' 'images' "$(offered build tide.yaml -o '')"
 same 'the same for the long option' 'images' "$(offered build tide.yaml --output '')"
+same 'folders of older images' 'images' "$(offered build tide.yaml --near '')"
 same 'formats' $'bin\nbin,hex\nhex' "$(offered build --format '')"
 same 'record lengths' $'16\n32' "$(offered build --record '')"
 same 'colours' $'always\nauto\nnever' "$(offered check --color '')"

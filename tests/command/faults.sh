@@ -77,6 +77,28 @@ for form in --color=never --markdown --json; do
 	holds "diff $form: $refusals of $total allocations refused" test "$refusals" -gt 500 -a "$cases_failed" -eq 0
 done
 
+# The same of build --near: every eleventh allocation.
+mkdir images
+cp whole/jetty.rom0.bin whole/jetty.manifest.json images
+sed 's/cells: 2/cells: 3/' plan.yaml >longer.yaml
+"$program" build longer.yaml --near images --format bin -o longer >near.stdout
+same 'near: status' 0 $?
+sed -i 's# longer/# out/#' near.stdout
+LD_PRELOAD=./faults.so FAULTS_COUNT=count "$program" build longer.yaml --near images --format bin -o out >/dev/null
+total=$(cat count)
+refusals=0
+for ((number = 1; number <= total; number += 11)); do
+	rm -rf out
+	LD_PRELOAD=./faults.so FAULTS_ALLOCATION=$number "$program" build longer.yaml --near images --format bin -o out >stdout 2>stderr
+	status=$?
+	[ $status -ne 3 ] || refusals=$((refusals + 1))
+	case $status in
+	0) diff -r longer out >/dev/null && cmp -s near.stdout stdout || fail "near, allocation $number: status 0, but another result" ;;
+	*) judge $status "$number of near" ;;
+	esac
+done
+holds "near: $refusals of $total allocations refused" test "$refusals" -gt 200 -a "$cases_failed" -eq 0
+
 # A signal that comes while the first file is flushed ends the program only after all files are whole.
 for signal in INT TERM HUP QUIT; do
 	rm -rf out

@@ -63,7 +63,9 @@ holds "two stages look as the README shows" compare 5
 holds "a set looks as the README shows" compare 6
 holds "the README moves a burst" eval "$(shell_block 5)"
 holds "diff shows what the README shows" compare 7
-same "the README shows seven commands" "$(block 8)" ""
+holds "the README builds what was burned" eval "$(shell_block 6)"
+holds "build --near shows what the README shows" compare 8
+same "the README shows eight commands" "$(block 9)" ""
 
 # A block of YAML that is a plan's or a set's own text: each of its lines stands there, but for what a comment says.
 yaml_block() { awk -v wanted="$1" '/^```/ { if (inside) inside = 0; else if ($0 == "```yaml") inside = ++count == wanted; next } inside' "$readme"; }
