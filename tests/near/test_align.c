@@ -1,21 +1,21 @@
-// Which old cell each new one is: frames put together by hand, one letter a cell. s: sync, b: blanked, B: blanked with burst, p: picture.
+// Which old cell each new one is: frames put together by hand, one letter a cell, as pins show it. s: sync, l: load, p: neither.
 #include "../layout/laid.h"
 
 #include "near/near.h"
 
 #define NONE NO_STATE
 
-// Letters for what the signals of laid.h show: sync (s), mark (b), both (B), load with its lead left out (p: nothing).
+enum { SYNC = 1, LOAD = 4 }; // signals of laid.h
+
 static uint64_t pins_of(char letter)
 {
-	enum { SYNC = 1, MARK = 8 };
-	return letter == 's' ? SYNC : letter == 'b' ? MARK : letter == 'B' ? SYNC | MARK : 0;
+	return letter == 's' ? SYNC : letter == 'l' ? LOAD : 0;
 }
 
-// An old frame whose cell i has state 100 + i; `lines` are the first cells of lines of a line-frame machine.
+// An old frame whose cell i has state 100 + i.
 static struct old_frame old_frame(struct arena *arena, const char *letters)
 {
-	struct old_frame frame = {.closed = true, .cell_count = (uint32_t)strlen(letters), .known = 1 | 8};
+	struct old_frame frame = {.closed = true, .cell_count = (uint32_t)strlen(letters), .known = SYNC | LOAD};
 	frame.states = arena_array(arena, frame.cell_count, sizeof *frame.states);
 	frame.pins = arena_array(arena, frame.cell_count, sizeof *frame.pins);
 	assert_true(frame.states != NULL && frame.pins != NULL);
@@ -26,15 +26,16 @@ static struct old_frame old_frame(struct arena *arena, const char *letters)
 	return frame;
 }
 
-// A new frame whose only line type shows letters; mark's lead of laid.h moves it by two cells, so it is not used here.
+// A new frame whose only line type shows letters. load has a lead of one cell: it is asserted in the cell after.
 static struct laid new_frame(const char *letters, unsigned repeat)
 {
 	struct arena *arena = arena_create();
 	struct text regions = {0}, frame = {0};
 	assert_non_null(arena);
 	text_put(&regions, "  a:\n    regions:\n");
-	for (const char *letter = letters; *letter != '\0'; letter++)
-		text_printf(&regions, "      - { region: r, cells: 1, assert: [%s] }\n", *letter == 's' ? "sync" : "");
+	for (size_t cell = 0, cells = strlen(letters); cell < cells; cell++)
+		text_printf(&regions, "      - { region: r, cells: 1, assert: [%s%s] }\n", letters[cell] == 's' ? "sync, " : "",
+		            letters[(cell + cells - 1) % cells] == 'l' ? "load" : "");
 	text_printf(&frame, "  - { repeat: %u, line: a }\n", repeat);
 	struct laid laid = lay("", text_string(&regions), text_string(&frame));
 	assert_laid(&laid);
@@ -96,6 +97,9 @@ static void test_moved_edge(void **state)
 static void test_longer_line(void **state)
 {
 	(void)state;
+	matched(NEAR_LINES, "sspplp", "ssppplp", 1, "abcd.ef");
+	matched(NEAR_SHOWN, "sspplp", "ssppplp", 1, "abcd.ef");
+	matched(NEAR_LINES, "ssppplp", "sspplp", 1, "abcdfg");
 	matched(NEAR_LINES, "ssppsp", "sspppsp", 1, "abcd.ef");
 	matched(NEAR_LINES, "sspp", "sspppp", 1, "abcd..");
 	matched(NEAR_SHOWN, "sspp", "sspppp", 1, "abcd..");
