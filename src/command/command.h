@@ -40,13 +40,14 @@ int command_check(int argument_count, char **arguments);
 int command_fit(int argument_count, char **arguments);
 int command_draw(int argument_count, char **arguments);
 int command_lift(int argument_count, char **arguments);
+int command_diff(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
 int command_schema(int argument_count, char **arguments);
 
 // Long options without a short one: values above any character.
 enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING,
-       OPTION_LINE, OPTION_BANK, OPTION_TEXT, OPTION_ASCII, OPTION_INTERLEAVE, OPTION_CUT, OPTION_NEAR };
+       OPTION_LINE, OPTION_BANK, OPTION_TEXT, OPTION_ASCII, OPTION_INTERLEAVE, OPTION_CUT, OPTION_NEAR, OPTION_GIT, OPTION_MARKDOWN };
 
 // The options that every command has, for its table.
 #define COMMON_LONG_OPTIONS                                                                                                \

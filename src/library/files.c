@@ -39,7 +39,7 @@ static scanlatch_plan *read_set(const char *name, const char *bytes, size_t leng
 	return set != NULL ? plan_of_set(set, messages) : NULL;
 }
 
-static scanlatch_plan *read_any(const char *path, scanlatch_messages *messages, bool as_board)
+static scanlatch_plan *read_any(const char *path, const char *name, scanlatch_messages *messages, bool as_board)
 {
 	struct arena *arena = arena_create();
 	char *bytes;
@@ -48,7 +48,7 @@ static scanlatch_plan *read_any(const char *path, scanlatch_messages *messages, 
 	if (arena == NULL) {
 		report(messages, path, READ_MEMORY, 0, "", 0);
 	} else if (read_plan_file(arena, path, &bytes, &length, messages)) {
-		const struct source seen = {source_label(path), bytes, length};
+		const struct source seen = {name, bytes, length};
 		if (source_is_set(&seen))
 			plan = read_set(seen.name, bytes, length, messages);
 		else
@@ -60,12 +60,17 @@ static scanlatch_plan *read_any(const char *path, scanlatch_messages *messages, 
 
 scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *messages)
 {
-	return read_any(path, messages, false);
+	return read_any(path, source_label(path), messages, false);
+}
+
+scanlatch_plan *scanlatch_plan_read_file_as(const char *path, const char *name, scanlatch_messages *messages)
+{
+	return read_any(path, name, messages, false);
 }
 
 scanlatch_plan *scanlatch_board_read_file(const char *path, scanlatch_messages *messages)
 {
-	return read_any(path, messages, true);
+	return read_any(path, source_label(path), messages, true);
 }
 
 // Intel HEX takes about 2.8 characters a byte; several times the capacity leaves room for short records.

@@ -14,7 +14,7 @@
 
 struct scanlatch_messages {
 	struct diagnostics *diagnostics;
-	struct arena *names;       // sources that messages quote: plans and the names of image files
+	struct arena *names;       // what messages quote: plans, names of image files, catalogues
 };
 
 // A plan among those of a set, or a plan alone.
@@ -26,7 +26,7 @@ struct member {
 };
 
 struct scanlatch_plan {
-	struct arena *arena;           // the catalogue and what stands here
+	struct arena *arena;           // what stands here
 	const struct source *source;   // owned by the messages that the plan was read with
 	struct plan *plan;             // the first member's: all have its chips, wiring and word
 	struct plan_set *set;          // which owns the plans; NULL for a plan alone
@@ -75,6 +75,9 @@ bool images_complete(const scanlatch_images *images, const char *folder, scanlat
 // Fills the chips from the tables of all members, each in its banks. False after reporting; then members disagree, or memory is out.
 bool banks_fill(scanlatch_images *images, scanlatch_messages *messages);
 
+// Makes images of a plan. `preferences`: for each member the states that its cells should keep; NULL: none. NULL after reporting.
+scanlatch_images *images_make(const scanlatch_plan *plan, const struct preference *const *preferences, scanlatch_messages *messages);
+
 // What messages call a file: its path, or "standard input" for "-". Cannot fail.
 const char *source_label(const char *file);
 
@@ -92,7 +95,7 @@ scanlatch_plan *board_read_text(const char *name, const char *bytes, size_t leng
 
 // A set and the plans of its listed banks, which agree.
 struct plan_set {
-	struct arena *arena;       // the catalogue and what stands here
+	struct arena *arena;       // what stands here
 	struct set *set;
 	struct plan **plans;       // [set->bank_count]
 };

@@ -59,32 +59,33 @@ static bool lay_out(scanlatch_plan *plan, struct diagnostics *diagnostics)
 	return good;
 }
 
-static bool load_plan(scanlatch_plan *plan, struct diagnostics *diagnostics)
+// The catalogue stays with the messages: one that memory did not suffice for is what they quote.
+static bool load_plan(scanlatch_plan *plan, scanlatch_messages *messages)
 {
-	const struct catalogue *catalogue = catalogue_load(plan->arena, diagnostics);
+	const struct catalogue *catalogue = catalogue_load(messages->names, messages->diagnostics);
 	if (catalogue == NULL)
 		return false;
-	plan->members[0].plan = plan_read(plan->source, catalogue, diagnostics);
-	return plan->members[0].plan != NULL && lay_out(plan, diagnostics);
+	plan->members[0].plan = plan_read(plan->source, catalogue, messages->diagnostics);
+	return plan->members[0].plan != NULL && lay_out(plan, messages->diagnostics);
 }
 
 // A board has no timeline.
-static bool load_board(scanlatch_plan *plan, struct diagnostics *diagnostics)
+static bool load_board(scanlatch_plan *plan, scanlatch_messages *messages)
 {
-	const struct catalogue *catalogue = catalogue_load(plan->arena, diagnostics);
+	const struct catalogue *catalogue = catalogue_load(messages->names, messages->diagnostics);
 	if (catalogue == NULL)
 		return false;
-	plan->plan = plan->members[0].plan = board_read(plan->source, catalogue, diagnostics);
+	plan->plan = plan->members[0].plan = board_read(plan->source, catalogue, messages->diagnostics);
 	if (plan->plan == NULL)
 		return false;
 	if (list_banks(plan, 0))
 		return true;
-	diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
+	diagnose(messages->diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
 	return false;
 }
 
 static scanlatch_plan *read_text(const char *name, const char *bytes, size_t length, scanlatch_messages *messages,
-                                 bool (*load)(scanlatch_plan *plan, struct diagnostics *diagnostics))
+                                 bool (*load)(scanlatch_plan *plan, scanlatch_messages *messages))
 {
 	const struct source *source = keep_source(messages->names, name, bytes, length);
 	scanlatch_plan *plan = source != NULL ? new_plan(1) : NULL;
@@ -93,7 +94,7 @@ static scanlatch_plan *read_text(const char *name, const char *bytes, size_t len
 		return NULL;
 	}
 	plan->source = source;
-	if (load(plan, messages->diagnostics))
+	if (load(plan, messages))
 		return plan;
 	scanlatch_plan_destroy(plan);
 	return NULL;

@@ -22,7 +22,7 @@ cd "$folder" || exit 1
 touch tide.yaml tide.yml tide.txt tide.rom0.bin tide.rom0.hex old.svg 'two words.yaml'
 mkdir images
 
-same 'commands' $'build\ncheck\ndraw\nfit\nlift\nlist\nprove\nschema' "$(offered '')"
+same 'commands' $'build\ncheck\ndiff\ndraw\nfit\nlift\nlist\nprove\nschema' "$(offered '')"
 same 'a command begun' 'prove' "$(offered pr)"
 same 'plans and folders' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered check '')"
 same 'images too, to be proved' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yaml\ntide.yml\ntwo words.yaml' \
@@ -33,6 +33,7 @@ same 'the same for the long option' 'images' "$(offered build tide.yaml --output
 same 'a plan to write' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered lift tide.yaml images -o '')"
 same 'images to lift a plan out of' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yaml\ntide.yml\ntwo words.yaml' \
 	"$(offered lift tide.yaml '')"
+same 'folders of older images' 'images' "$(offered build tide.yaml --near '')"
 same 'formats' $'bin\nbin,hex\nhex' "$(offered build --format '')"
 same 'record lengths' $'16\n32' "$(offered build --record '')"
 same 'colours' $'always\nauto\nnever' "$(offered check --color '')"
@@ -54,7 +55,7 @@ same 'every standard of the catalogue' \
 	"$("$SCANLATCH" list standards --json | sed -n 's/^      "name": "\(.*\)",$/\1/p' | sort)" "$(offered fit --standard '')"
 long_options='(^|[^-A-Za-z])--[a-z]+(-[a-z]+)*'
 page=$(sed 's/\\-/-/g; s/\\f.//g' src/command/scanlatch.1)
-for command in check build prove draw fit lift list schema; do
+for command in check build prove diff draw fit lift list schema; do
 	options=$("$SCANLATCH" "$command" --help | grep -oE -- "$long_options" | grep -oE -- '--[a-z-]+' | sort -u)
 	same "$command: completion offers the options that its help names" "$options" "$(offered "$command" --)"
 	for option in $options; do

@@ -175,9 +175,9 @@ in_git() {
 mkdir "$work/repository"
 cp "$plan" "$work/repository/tide-board-60.yaml"
 cp "$work"/images/*.bin "$work/repository"
-echo '*.bin diff=scanlatch' >"$work/repository/.gitattributes"
+echo '*.bin diff=scanlatch-rows' >"$work/repository/.gitattributes"
 holds 'git: a repository' in_git init -q
-in_git config diff.scanlatch.textconv 'scanlatch lift --text tide-board-60.yaml'
+in_git config diff.scanlatch-rows.textconv 'scanlatch lift --text tide-board-60.yaml'
 in_git add . && in_git commit -q -m 'first'
 sed -i 's/burst,       time: 2.51 us/burst,       cells: 5/' "$work/repository/tide-board-60.yaml"
 holds 'git: one cell more of burst' "$SCANLATCH" build "$work/repository/tide-board-60.yaml" -o "$work/repository" --format bin
