@@ -155,7 +155,7 @@ static void put_line(struct text *out, const struct timeline *timeline, size_t t
 	view_columns(out, &table, TERMINAL_CHARACTERS);
 }
 
-void put_frequency(struct text *out, struct fraction hertz)
+void put_hertz(struct text *out, struct fraction hertz)
 {
 	struct fraction megahertz;
 	text_put_fraction(out, hertz);
@@ -176,7 +176,7 @@ static void put_head(struct text *out, const struct plan *plan)
 		excerpt_put_printable(plan->note, strlen(plan->note), out);
 	}
 	text_put(out, "\nclock: ");
-	put_frequency(out, clock->master_hz);
+	put_hertz(out, clock->master_hz);
 	if (clock->has_accuracy) {
 		text_put(out, " within ");
 		text_put_rounded(out, clock->accuracy_ppm, 6);
@@ -189,7 +189,7 @@ static void put_head(struct text *out, const struct plan *plan)
 	text_put(out, "\n");
 	if (clock->has_subcarrier) {
 		text_put(out, "subcarrier: ");
-		put_frequency(out, clock->subcarrier_hz);
+		put_hertz(out, clock->subcarrier_hz);
 		text_put(out, "\n");
 	}
 }
@@ -246,8 +246,8 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 		for (size_t type = 0; type < plan->line_count; type++)
 			put_line(out, timeline, type, uses[type]);
 		text_put(out, "\nframe: ");
-	put_frame_figures(out, timeline);
-	text_put(out, "\n");
+		put_frame_figures(out, timeline);
+		text_put(out, "\n");
 		view_placement(out, timeline);
 		good = put_suggestion(out, timeline, arena);
 		text_put(out, "\n");

@@ -29,7 +29,7 @@ uint32_t *count_uses(const struct timeline *timeline, struct arena *arena);
 // In words, without line breaks: a line type, used by so many lines; the frame; "157500000/11 Hz (14.318182 MHz)".
 void put_line_figures(struct text *out, const struct line_view *view, uint32_t uses);
 void put_frame_figures(struct text *out, const struct timeline *timeline);
-void put_frequency(struct text *out, struct fraction hertz);
+void put_hertz(struct text *out, struct fraction hertz);
 
 // Puts the report of `check` for a terminal. *kept (may be NULL): colour is what the plan demands; *advice_kept (may be NULL): limits are kept and
 // the speed suffices. False when memory is out.
