@@ -132,6 +132,10 @@ char *scanlatch_proofs_json(const scanlatch_proofs *proofs);
 enum { SCANLATCH_FILE_BIN = 1, SCANLATCH_FILE_HEX = 2 };
 char *scanlatch_manifest(const scanlatch_proofs *proofs, unsigned files);
 
+/* The build sheet, a page of HTML that is XML too and loads nothing: verdicts, files to burn, wiring, bring-up, limits. If a must failed, or with
+ * strict any advice, it says so first and is not approved. NULL when memory is out. */
+char *scanlatch_sheet(const scanlatch_proofs *proofs, bool strict);
+
 /* ---- Catalogues ---- */
 
 /* The catalogues of parts, of standards and of crystals as text or JSON (shapes: src/view/parts.h, standards.h, crystals.h).

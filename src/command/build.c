@@ -1,6 +1,5 @@
 #include <getopt.h>
 #include <jansson.h>
-#include <signal.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -271,12 +270,8 @@ static int print_json(const struct build *build, bool written)
 // Writes all files. A signal that would end the program waits until the temporaries are gone. False with *failure filled.
 static bool write_files(struct build *build, struct write_failure *failure)
 {
-	static const int ending[] = {SIGINT, SIGTERM, SIGHUP, SIGQUIT};
-	sigset_t waiting, before;
-	sigemptyset(&waiting);
-	for (size_t index = 0; index < sizeof ending / sizeof *ending; index++)
-		sigaddset(&waiting, ending[index]);
-	pthread_sigmask(SIG_BLOCK, &waiting, &before); // before the thread that shows progress, which inherits it
+	sigset_t before;
+	hold_ending_signals(&before); // before the thread that shows progress, which inherits it
 	progress_begin(&build->progress, "writing");
 	const bool written = file_write_all(build->arena, build->options->directory, build->files, build->file_count, failure);
 	progress_end(&build->progress);

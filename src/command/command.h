@@ -3,6 +3,7 @@
 #define SCANLATCH_COMMAND_COMMAND_H
 
 #include <pthread.h>
+#include <signal.h>
 #include <stdbool.h>
 #include <stddef.h>
 
@@ -38,6 +39,7 @@ int command_build(int argument_count, char **arguments);
 int command_check(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
+int command_sheet(int argument_count, char **arguments);
 
 // Long options without a short one: values above any character.
 enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING };
@@ -67,6 +69,13 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 
 // Prints the version to standard output. Returns EXIT_GOOD.
 int print_version(void);
+
+// Lets the signals that would end the program wait, so that no temporary file is left; *before is what to restore.
+void hold_ending_signals(sigset_t *before);
+
+// Writes a result as a file, whole or not at all; *kept says that the file held these bytes already and was left alone. A device or pipe is written
+// into. False after saying on standard error what was refused.
+bool write_result(const char *path, const char *bytes, size_t length, bool *kept);
 
 // "scanlatch COMMAND: …" and where to find help, on standard error. Returns EXIT_BAD.
 __attribute__((format(printf, 2, 3)))

@@ -118,14 +118,19 @@ void put_state_source(struct text *out, const struct plan *plan, enum stage stag
 		put_latch_pin(out, plan, &nets, latch_bit_of(&nets, (struct data_wire){DATA_NEXT, bit}), 'Q');
 }
 
+void put_data_source(struct text *out, const struct plan *plan, const struct stage_nets *nets, struct data_wire wire)
+{
+	const unsigned bit = latch_bit_of(nets, wire);
+	if (bit < nets->latch_bits)
+		put_latch_pin(out, plan, nets, bit, 'Q');
+	else
+		put_data_pin(out, plan, nets->stage, wire);
+}
+
 void put_kind_source(struct text *out, const struct plan *plan, unsigned bit)
 {
 	const struct stage_nets nets = nets_of_stage(plan, STAGE_FRAME);
-	const struct data_wire wire = {DATA_KIND, bit};
-	if (nets.latched)
-		put_latch_pin(out, plan, &nets, latch_bit_of(&nets, wire), 'Q');
-	else
-		put_data_pin(out, plan, STAGE_FRAME, wire);
+	put_data_source(out, plan, &nets, (struct data_wire){DATA_KIND, bit});
 }
 
 static void put_straight_sink(struct text *out, const struct plan *plan, const struct stage_nets *nets, struct data_wire wire)

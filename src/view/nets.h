@@ -39,6 +39,8 @@ void put_latch_pin(struct text *out, const struct plan *plan, const struct stage
 // Puts where a bit of a stage's state, or of the kind, comes from: "latch 1, Q3", "line counter 2, Q0", "D2 (pin 11) of rom3".
 void put_state_source(struct text *out, const struct plan *plan, enum stage stage, unsigned bit);
 void put_kind_source(struct text *out, const struct plan *plan, unsigned bit);
+// Puts where a net of an EEPROM's data pin can be probed: behind its latch, or at the pin itself.
+void put_data_source(struct text *out, const struct plan *plan, const struct stage_nets *nets, struct data_wire wire);
 // Puts where a data net goes: "latch 1, D3", "the counters' clear, inverted", "the line stage's address".
 void put_data_sink(struct text *out, const struct plan *plan, const struct stage_nets *nets, struct data_wire wire);
 // Puts the data pins that carry a wire: "D3 (pin 15) of rom0".
