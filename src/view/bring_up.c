@@ -236,16 +236,16 @@ static void put_state_fault(struct text *out, const struct bring_up *bring_up, c
 {
 	const struct plan *plan = plan_of_rows(bring_up);
 	if (machine_stage(&plan->machine, net->stage)->advance == ADVANCE_COUNT) {
-		text_put(out, "steady: no clock, not enabled, or held in clear; another bit's value: crossed with it");
+		text_put(out, "steady: no clock, not enabled, or held in clear; another row's value: crossed with it");
 		return;
 	}
 	if (net->rises == 0) {
 		text_put(out, "it moves: crossed with another bit, or the machine is not in its frame");
 		return;
 	}
-	text_put(out, "steady: no clock at its latch, or the wire from ");
+	text_put(out, "steady: the latch's clock, or the wire from ");
 	put_data_pin(out, plan, net->stage, wire_of(net));
-	text_put(out, " open or shorted; another bit's value: crossed with it");
+	text_put(out, "; another row's value: crossed with it");
 }
 
 static void put_signal_fault(struct text *out, const struct bring_up *bring_up, const struct bring_up_row *row)

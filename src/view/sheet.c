@@ -119,13 +119,16 @@ static void put_contents(struct text *out, const struct sheet *sheet)
 	char mark[MARK_BYTES];
 	text_put(out, "<nav aria-label=\"Sections\"><ul>\n");
 	put_links(out, common_sections, sizeof common_sections / sizeof *common_sections, "");
+	if (sheet->view->set != NULL)
+		put_links(out, last_sections, sizeof last_sections / sizeof *last_sections, "");
 	for (size_t member = 0; member < sheet->view->count; member++) {
 		make_mark(mark, sheet, member);
 		if (sheet->view->set != NULL)
 			page_element(out, "li", " class=\"bank\"", "Bank %u:", sheet->view->set->banks[member].number);
 		put_links(out, bank_sections, BANK_SECTIONS, mark);
 	}
-	put_links(out, last_sections, sizeof last_sections / sizeof *last_sections, "");
+	if (sheet->view->set == NULL)
+		put_links(out, last_sections, sizeof last_sections / sizeof *last_sections, "");
 	text_put(out, "</ul></nav>\n");
 }
 

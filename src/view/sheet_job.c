@@ -7,7 +7,7 @@
 #include "view/page.h"
 #include "view/sheet_parts.h"
 
-// "three" reads easier than "3" but not in a list of parts: "3 x 28C010 (rom0, rom1, rom2), 120 ns".
+// "rom0 (28C010, 120 ns), rom1 (28C010, 120 ns)".
 static void put_parts(struct text *words, const struct plan *plan, enum stage stage)
 {
 	bool first = true;
@@ -50,14 +50,14 @@ static void put_stage(struct text *words, const struct plan *plan, enum stage st
 static void put_phase_asked(struct text *words, const struct clock *clock)
 {
 	if (clock->phase == PHASE_FREE) {
-		text_put(words, "is free");
+		text_put(words, " is free");
 		return;
 	}
 	const char *unit = clock->phase == PHASE_LINES ? "line" : "frame";
 	if (clock->phase_count == 1)
-		text_printf(words, "repeats every %s", unit);
+		text_printf(words, " is to repeat every %s", unit);
 	else
-		text_printf(words, "repeats every %lld %ss", (long long)clock->phase_count, unit);
+		text_printf(words, " is to repeat every %lld %ss", (long long)clock->phase_count, unit);
 }
 
 void sheet_clock_words(struct text *words, const struct timeline *timeline)
@@ -81,7 +81,7 @@ void sheet_clock_words(struct text *words, const struct timeline *timeline)
 	if (clock->has_subcarrier) {
 		text_put(words, " The colour subcarrier is ");
 		put_hertz(words, clock->subcarrier_hz);
-		text_put(words, "; its phase ");
+		text_put(words, "; its phase");
 		put_phase_asked(words, clock);
 		text_put(words, ".");
 	}

@@ -171,9 +171,12 @@ static void put_chip_counts(struct text *out, const struct plan *plan, const str
 		text_printf(&words, "%u x %s, of four bits. ", counters, plan->timing.counter_part[nets->stage]);
 	if (latches > 0)
 		text_printf(&words, "%u x %s, of eight bits. ", latches, plan->timing.latch_part);
-	text_put(&words, nets->stage == STAGE_LINE ? "Clock of all of them: the edge that ends a cell."
-	                                           : "Clock of all of them: the edge that ends a cell in which step is high; the latches' is gated "
-	                                             "with step, or they have an enable.");
+	if (nets->stage == STAGE_LINE)
+		text_put(&words, "Clock of all of them: the edge that ends a cell.");
+	if (nets->stage == STAGE_FRAME && counters > 0)
+		text_put(&words, "Clock of the counters: the edge that ends a cell; step enables them. ");
+	if (nets->stage == STAGE_FRAME && latches > 0)
+		text_put(&words, "Clock of the latches: the edge that ends a cell, gated so that it comes only while step is high.");
 	page_element_of(out, "p", "", &words);
 }
 
