@@ -13,16 +13,17 @@ static const struct column bring_up_columns[COLUMN_COUNT] = {
 	[COLUMN_DUTY] = {"high", true}, [COLUMN_FAULT] = {"if it is wrong", false},
 };
 
+// A bit of the divider stays low where only stretched cells would reach it, and there are none.
 static bool is_steady(const struct bring_up_row *row)
 {
-	return row->kind == BRING_UP_NET && row->net->rises == 0;
+	return row->has_duty && row->hertz.numerator == 0;
 }
 
 // Rounded, and below it exact.
 static void put_rate_cell(struct text *out, const struct bring_up_row *row)
 {
 	if (is_steady(row)) {
-		text_put(out, row->net->level ? "steady high" : "steady low");
+		text_put(out, row->kind == BRING_UP_NET && row->net->level ? "steady high" : "steady low");
 		return;
 	}
 	put_rate(out, row->hertz);
