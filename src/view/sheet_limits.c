@@ -4,37 +4,53 @@
 #include "view/page.h"
 #include "view/proofs_shared.h"
 #include "view/sheet_parts.h"
+#include "view/standards.h"
 
 static void put_note_paragraph(struct text *out, struct text *words)
 {
 	page_element_of(out, "p", "", words);
 }
 
-static void put_exact_bound(struct text *words, const char *name, bool given, struct fraction value)
+// In the item's unit, as JSON has it.
+static void put_in_unit(struct text *words, enum limit_item item, struct fraction value)
+{
+	struct fraction scaled = value;
+	if (limit_item_facts(item)->is_polarity || limit_value_in_unit(item, value, &scaled))
+		text_put_fraction(words, scaled);
+	else
+		text_put(words, "?");
+}
+
+static void put_bound(struct text *words, const char *name, bool given, enum limit_item item, struct fraction value)
 {
 	if (!given)
 		return;
 	text_printf(words, "; %s ", name);
-	text_put_fraction(words, value);
+	put_in_unit(words, item, value);
 }
 
-// The exact values, in the unit of the item's dimension: seconds, hertz, cycles, lines.
+static void put_bounds(struct text *words, const struct proofs *proofs, const struct limit *limit)
+{
+	const struct limit_verdict *verdict = &proofs->limits.rows[limit->item].grades[limit->grade];
+	put_bound(words, "low", limit->has_low, limit->item, limit->low);
+	put_bound(words, "high", limit->has_high, limit->item, limit->high);
+	put_bound(words, "margin", verdict->known && verdict->judgement.binds, limit->item, verdict->judgement.margin);
+}
+
+// "front porch, in us: measured 176/35; low 8/9; margin 1304/315".
 static void put_exact(struct text *words, const struct proofs *proofs, enum limit_item item)
 {
-	const struct measured *measured = &proofs->limits.measurement->items[item];
+	const struct interval values = proofs->limits.measurement->items[item].values;
 	const struct limit *limit = standard_limit(plan_of(proofs)->standard, item, plan_of(proofs)->grade);
-	text_printf(words, "%s: measured ", limit_item_facts(item)->name);
-	text_put_fraction(words, measured->values.low);
-	if (fraction_compare(measured->values.low, measured->values.high) != 0) {
+	const char *unit = limit_item_facts(item)->unit;
+	text_printf(words, "%s%s%s: measured ", limit_item_facts(item)->name, unit[0] != '\0' ? ", in " : "", unit);
+	put_in_unit(words, item, values.low);
+	if (fraction_compare(values.low, values.high) != 0) {
 		text_put(words, " to ");
-		text_put_fraction(words, measured->values.high);
+		put_in_unit(words, item, values.high);
 	}
-	if (limit != NULL) {
-		put_exact_bound(words, "low", limit->has_low, limit->low);
-		put_exact_bound(words, "high", limit->has_high, limit->high);
-	}
-	if (limit != NULL && (limit->has_low || limit->has_high) && proofs->limits.rows[item].grades[limit->grade].known)
-		put_exact_bound(words, "margin", true, proofs->limits.rows[item].grades[limit->grade].judgement.margin);
+	if (limit != NULL)
+		put_bounds(words, proofs, limit);
 }
 
 static void put_limit_attributes(struct text *out, const void *context, size_t row)
