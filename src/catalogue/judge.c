@@ -49,16 +49,19 @@ static bool find_share(const struct limit *limit, struct fraction margin, struct
 	return true;
 }
 
-bool limit_judge(const struct limit *limit, struct interval measured, struct judgement *judgement)
+struct judgement limit_judge(const struct limit *limit, struct interval measured)
 {
 	struct judgement result = {.binds = limit->has_low || limit->has_high, .margin = FRACTION_ZERO, .share = FRACTION_ZERO};
-	if (result.binds) {
-		if (!find_margin(limit, measured, &result.margin) || !find_share(limit, result.margin, &result))
-			return false;
-		result.kept = result.margin.numerator >= 0;
+	if (!result.binds)
+		return result;
+	result.kept = (!limit->has_low || fraction_compare(measured.low, limit->low) >= 0) &&
+	              (!limit->has_high || fraction_compare(measured.high, limit->high) <= 0);
+	result.has_margin = find_margin(limit, measured, &result.margin) && find_share(limit, result.margin, &result);
+	if (!result.has_margin) {
+		result.margin = result.share = FRACTION_ZERO;
+		result.has_share = false;
 	}
-	*judgement = result;
-	return true;
+	return result;
 }
 
 #define MILLION 1000000

@@ -12,6 +12,7 @@ struct interval {
 struct judgement {
 	bool binds;             // false: the limit is for information, and nothing below means anything
 	bool kept;              // the whole interval lies within the limit
+	bool has_margin;        // the two below fit 64-bit fractions
 	struct fraction margin; // from the interval to the nearer bound, in the unit of the item's dimension: how far the value
 	                        // may still move; below zero: by how much it misses
 	bool has_share;         // false where the bounds are one value ("exactly"): then it is kept or not, and there is no nearer
@@ -22,8 +23,8 @@ struct judgement {
 // bound it is the distance from the nominal to it, or the bound itself where there is no nominal apart from it. (A bound of 0
 // alone has none: then the share is 1 above it, 0 on it, -1 below it.)
 
-// Judges an interval by a limit. False, with *judgement as it was, where a number does not fit.
-bool limit_judge(const struct limit *limit, struct interval measured, struct judgement *judgement);
+// Judges an interval by a limit. Cannot fail: the verdict holds even where the margin does not fit.
+struct judgement limit_judge(const struct limit *limit, struct interval measured);
 
 // Widens an interval by the accuracy of the clock that it was measured with: frequencies grow and times shrink with it; counts
 // and subcarrier cycles stay. False, with *interval as it was, where a number does not fit.

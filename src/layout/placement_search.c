@@ -63,6 +63,7 @@ static struct range range_of_type(const struct placement_group *group, const str
 	return (struct range){least * placed->cells, most * placed->cells};
 }
 
+// False if the value does not fit.
 static bool judge_value(const struct search *search, const struct placement_group *group, int64_t raw, struct judgement *judgement)
 {
 	const struct plan *plan = search->model->plan;
@@ -73,7 +74,8 @@ static bool judge_value(const struct search *search, const struct placement_grou
 	if (plan->clock.has_accuracy &&
 	    !interval_widen(&values, limit_item_facts(group->item)->dimension, plan->clock.accuracy_ppm))
 		return false;
-	return limit_judge(standard_limit(plan->standard, group->item, plan->grade), values, judgement);
+	*judgement = limit_judge(standard_limit(plan->standard, group->item, plan->grade), values);
+	return true;
 }
 
 // False when memory is out. A value whose judgement does not fit 64 bits counts as missed.

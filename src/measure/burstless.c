@@ -89,36 +89,65 @@ static void join_ends(struct measurement *result, struct burstless *list, bool j
 	result->burstless_count--;
 }
 
-static bool runs_match(const struct measurement *result, const struct standard *standard, uint32_t turn)
+// The run of lines without burst that each field has; NULL in *runs where one has none, or more than one. False when memory is out.
+static bool runs_of_fields(struct arena *arena, const struct measurement *result, const struct burstless ***runs)
 {
-	size_t pause_fields = 0;
-	for (size_t index = 0; index < standard->pause_count; index++)
-		if (standard->pauses[index].field > pause_fields)
-			pause_fields = standard->pauses[index].field;
-	size_t wanted = 0;
+	const struct burstless **list = arena_array(arena, result->field_count, sizeof *list);
+	*runs = list;
+	if (list == NULL)
+		return false;
+	for (uint32_t run = 0; run < result->burstless_count && *runs != NULL; run++) {
+		if (list[result->burstless[run].field] != NULL)
+			*runs = NULL;
+		list[result->burstless[run].field] = &result->burstless[run];
+	}
 	for (uint32_t field = 0; field < result->field_count; field++)
-		for (size_t index = 0; index < standard->pause_count; index++) {
-			const struct burst_pause *pause = &standard->pauses[index];
-			if (pause->field != (field + turn) % pause_fields + 1)
-				continue;
-			wanted++;
-			bool found = false;
-			for (uint32_t run = 0; run < result->burstless_count && !found; run++)
-				found = result->burstless[run].field == field && result->burstless[run].first_line == pause->first_line &&
-				        result->burstless[run].last_line == pause->last_line;
-			if (!found)
-				return false;
-		}
-	return wanted == result->burstless_count;
+		if (list[field] == NULL)
+			*runs = NULL;
+	return true;
 }
 
-// A frame may begin with any field of the standard's sequence.
-static bool pauses_match(const struct measurement *result, const struct standard *standard)
+// The lines without burst of a field of the standard's sequence; NULL if it has none.
+static const struct burst_pause *pause_of(const struct standard *standard, size_t field)
 {
-	for (uint32_t turn = 0; turn < standard->pause_count; turn++)
-		if (runs_match(result, standard, turn))
-			return true;
-	return false;
+	for (size_t index = 0; index < standard->pause_count; index++)
+		if (standard->pauses[index].field == field + 1)
+			return &standard->pauses[index];
+	return NULL;
+}
+
+static size_t fields_of_sequence(const struct standard *standard)
+{
+	size_t fields = 0;
+	for (size_t index = 0; index < standard->pause_count; index++)
+		if (standard->pauses[index].field > fields)
+			fields = standard->pauses[index].field;
+	return fields;
+}
+
+// Whether the frame, as it repeats, has the standard's sequence from one of its fields on.
+static bool sequence_matches(const struct measurement *result, const struct standard *standard, const struct burstless *const *runs,
+                             size_t turn)
+{
+	const size_t sequence = fields_of_sequence(standard);
+	for (size_t step = 0; step < sequence * result->field_count; step++) {
+		const struct burst_pause *pause = pause_of(standard, (step + turn) % sequence);
+		const struct burstless *run = runs[step % result->field_count];
+		if (pause == NULL || run->first_line != pause->first_line || run->last_line != pause->last_line)
+			return false;
+	}
+	return sequence > 0;
+}
+
+// A frame may begin with any field of the sequence. False when memory is out.
+static bool judge_pauses(struct arena *arena, struct measurement *result, const struct standard *standard)
+{
+	const struct burstless **runs;
+	if (!runs_of_fields(arena, result, &runs))
+		return false;
+	for (size_t turn = 0; runs != NULL && !result->pauses_kept && turn < fields_of_sequence(standard); turn++)
+		result->pauses_kept = result->numbered && sequence_matches(result, standard, runs, turn);
+	return true;
 }
 
 // The burstless lines of each field as an item of its own, and where the first of them is.
@@ -156,7 +185,6 @@ bool measure_burstless(struct instrument *instrument, struct measurement *result
 	result->field_count = raster->field_count;
 	result->numbered = numbering.first_number > 0;
 	result->burstless = list;
-	result->pauses_kept = result->numbered && pauses_match(result, instrument->standard);
 	tally_fields(instrument, fields);
-	return true;
+	return judge_pauses(instrument->arena, result, instrument->standard);
 }

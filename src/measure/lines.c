@@ -1,4 +1,4 @@
-// What normal lines show: those from a normal pulse to the next.
+// What normal lines show: those that begin with a normal pulse and end with any.
 #include <string.h>
 
 #include "base/arena.h"

@@ -128,11 +128,12 @@ static void put_lines(struct raster *raster, struct cursor from, struct cursor t
 			at = next;
 			cursor_next(raster, &next);
 		}
-		*line = (struct raster_line){.place = place, .start = at.tick + (place - at.place) / 2, .end = to.tick,
-		                             .normal = lines == 1 && next.pulse == to.pulse,
-		                             .pulse = index == 0 ? from.pulse : UINT32_MAX};
+		*line = (struct raster_line){.place = place, .start = at.tick + (place - at.place) / 2, .end = to.tick, .normal = lines == 1,
+		                             .pulse = at.place == place ? at.pulse : UINT32_MAX};
 		if (index > 0)
 			line[-1].end = line->start;
+		if (index == 1)
+			line[-1].normal = line->pulse != UINT32_MAX;
 	}
 }
 

@@ -36,8 +36,8 @@ struct raster {
 struct raster_line {
 	int64_t place;                 // may be place_total or higher, past the trace's end
 	int64_t start, end;            // ticks; may be past the trace's end
-	bool normal;                   // begins with a normal pulse, and so does the line after it
-	uint32_t pulse;                // if it begins with a normal pulse: its index
+	bool normal;                   // begins with a normal pulse, and the line after it with a pulse too, of whatever kind
+	uint32_t pulse;                // that it begins with; UINT32_MAX if it begins without
 };
 
 // A field, from 0V to the next.

@@ -35,7 +35,8 @@ static void runner_next(struct runner *runner)
 // Notes the picture of a line, from a runner that stands at the first that ends after the line begins.
 static void note_picture(const struct raster *raster, const struct raster_line *line, struct line_view *view, struct runner runner)
 {
-	const int64_t middle = line->start + raster->line_ticks / 2;
+	// Within 1/16 of a line of its middle a picture ends, or begins, half way.
+	const int64_t line_ticks = raster->line_ticks;
 	for (struct pulse pulse = runner_pulse(&runner); pulse.start < line->end; runner_next(&runner), pulse = runner_pulse(&runner)) {
 		if (!view->has_picture) {
 			view->picture_first = pulse.start > line->start ? pulse.start : line->start;
@@ -44,8 +45,8 @@ static void note_picture(const struct raster *raster, const struct raster_line *
 		view->has_picture = true;
 		view->picture_last = pulse.end < line->end ? pulse.end : line->end;
 		view->picture_last_cell = pulse.end_cell;
-		view->in_first_half = view->in_first_half || pulse.start < middle;
-		view->in_second_half = view->in_second_half || pulse.end > middle;
+		view->in_first_half = view->in_first_half || (pulse.start - line->start) * 16 < 7 * line_ticks;
+		view->in_second_half = view->in_second_half || (pulse.end - line->start) * 16 > 9 * line_ticks;
 	}
 }
 

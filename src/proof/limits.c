@@ -75,13 +75,12 @@ static bool make_shift(const struct clock *clock, enum limit_item item, struct i
 static bool keeps_shifted(const struct shift *shift, int64_t cells, struct interval *moved)
 {
 	struct fraction by;
-	struct judgement judgement;
 	if (!fraction_multiply(shift->cell, fraction_whole(cells), &by) || !fraction_add(shift->values.low, by, &moved->low) ||
 	    !fraction_add(shift->values.high, by, &moved->high))
 		return false;
 	if (shift->clock->has_accuracy && !interval_widen(moved, shift->dimension, shift->clock->accuracy_ppm))
 		return false;
-	return limit_judge(&shift->limit, *moved, &judgement) && judgement.kept;
+	return limit_judge(&shift->limit, *moved).kept;
 }
 
 // The fewest cells whose shift keeps the limit; 0 if none does. The first candidate comes from the margin; accuracy may ask for
@@ -89,11 +88,11 @@ static bool keeps_shifted(const struct shift *shift, int64_t cells, struct inter
 static int64_t fewest_cells(const struct shift *shift, struct interval *moved)
 {
 	struct interval measured = shift->values;
-	struct judgement judgement;
 	struct fraction cells, below;
 	if (shift->clock->has_accuracy && !interval_widen(&measured, shift->dimension, shift->clock->accuracy_ppm))
 		return 0;
-	if (!limit_judge(&shift->limit, measured, &judgement) || !fraction_divide(judgement.margin, shift->cell, &cells))
+	const struct judgement judgement = limit_judge(&shift->limit, measured);
+	if (!judgement.has_margin || !fraction_divide(judgement.margin, shift->cell, &cells))
 		return 0;
 	const bool too_small = shift->limit.has_low && fraction_subtract(measured.low, shift->limit.low, &below) && below.numerator < 0;
 	const int64_t least = -fraction_floor(cells);
@@ -161,7 +160,8 @@ static void judge_item(struct trial *trial, struct limits_result *limits, enum l
 		verdict->has_limit = limit != NULL;
 		if (limit == NULL)
 			continue;
-		verdict->known = fits && limit_judge(limit, row->values, &verdict->judgement);
+		verdict->known = fits;
+		verdict->judgement = limit_judge(limit, row->values);
 		const bool binds = limit->has_low || limit->has_high;
 		limits->unknown[grade] += binds && !verdict->known;
 		if (!verdict->known || !binds)

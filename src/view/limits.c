@@ -112,7 +112,7 @@ static void put_table_cell(struct text *out, const void *context, size_t row, si
 	case COLUMN_UNIT: text_put(out, limit_item_facts(item)->unit); break;
 	case COLUMN_MEASURED: put_interval(out, item, proofs->limits.measurement->items[item].values); break;
 	case COLUMN_MARGIN:
-		if (verdict->known && verdict->judgement.binds && !limit_item_facts(item)->is_polarity)
+		if (verdict->known && verdict->judgement.has_margin && !limit_item_facts(item)->is_polarity)
 			put_value(out, item, verdict->judgement.margin);
 		else
 			text_put(out, "-");
@@ -301,12 +301,23 @@ static bool is_too_low(const struct proofs *proofs, const struct limit *limit)
 	return limit->has_low && fraction_compare(proofs->limits.rows[limit->item].values.low, limit->low) < 0;
 }
 
+// Lines without burst may be as many as they should, but others.
+static bool put_other_lines(struct text *out, const struct limits_result *limits, const struct limit *limit)
+{
+	if (limit->item != ITEM_LINES_WITHOUT_BURST || limits->rows[limit->item].grades[limit->grade].judgement.margin.numerator < 0)
+		return false;
+	text_put(out, "lines without burst are as many as they should be, but not the standard's, field by field");
+	return true;
+}
+
 void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_item item)
 {
 	const struct limit *limit = limit_at(proofs, item, plan_of_proofs(proofs)->grade);
 	const struct measured *measured = &proofs->limits.measurement->items[item];
 	struct fraction off = proofs->limits.rows[item].grades[limit->grade].judgement.margin;
 	const uint32_t cell = is_too_low(proofs, limit) ? measured->low_at.from_cell : measured->high_at.from_cell;
+	if (put_other_lines(out, &proofs->limits, limit))
+		return;
 	text_printf(out, "%s is ", limit_item_facts(item)->name);
 	put_interval(out, item, measured->values);
 	put_unit(out, item);

@@ -44,7 +44,8 @@ static json_t *verdict_json(const struct proofs *proofs, const struct limit *lim
 	if (!verdict->known || !verdict->judgement.binds)
 		return object;
 	json_put(&object, "kept", json_boolean(verdict->judgement.kept));
-	put_value(&object, "margin", limit->item, verdict->judgement.margin);
+	if (verdict->judgement.has_margin)
+		put_value(&object, "margin", limit->item, verdict->judgement.margin);
 	if (verdict->judgement.has_share)
 		json_put_fraction(&object, "share", verdict->judgement.share);
 	put_move(&object, proofs->timeline, verdict);
