@@ -19,10 +19,10 @@ root=$PWD
 folder=$(mktemp -d) || exit 1
 trap 'rm -rf "$folder"' EXIT
 cd "$folder" || exit 1
-touch tide.yaml tide.yml tide.txt tide.rom0.bin tide.rom0.hex 'two words.yaml'
+touch tide.yaml tide.yml tide.txt tide.html tide.rom0.bin tide.rom0.hex 'two words.yaml'
 mkdir images
 
-same 'commands' $'build\ncheck\nlist\nprove' "$(offered '')"
+same 'commands' $'build\ncheck\nlist\nprove\nsheet' "$(offered '')"
 same 'a command begun' 'prove' "$(offered pr)"
 same 'plans and folders' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered check '')"
 same 'images too, to be proved' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yaml\ntide.yml\ntwo words.yaml' \
@@ -30,6 +30,7 @@ same 'images too, to be proved' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yam
 same 'a blank in a name' 'two words.yaml' "$(offered check tw)"
 same 'folders to write to' 'images' "$(offered build tide.yaml -o '')"
 same 'the same for the long option' 'images' "$(offered build tide.yaml --output '')"
+same 'pages to write to' $'images\ntide.html' "$(offered sheet tide.yaml -o '')"
 same 'formats' $'bin\nbin,hex\nhex' "$(offered build --format '')"
 same 'record lengths' $'16\n32' "$(offered build --record '')"
 same 'colours' $'always\nauto\nnever' "$(offered check --color '')"
@@ -42,7 +43,7 @@ same 'nothing that is not there' '' "$(offered check x)"
 cd "$root" || exit 1
 long_options='(^|[^-A-Za-z])--[a-z]+(-[a-z]+)*'
 page=$(sed 's/\\-/-/g; s/\\f.//g' src/command/scanlatch.1)
-for command in check build prove list; do
+for command in check build prove sheet list; do
 	options=$("$SCANLATCH" "$command" --help | grep -oE -- "$long_options" | grep -oE -- '--[a-z-]+' | sort -u)
 	same "$command: completion offers the options that its help names" "$options" "$(offered "$command" --)"
 	for option in $options; do

@@ -48,15 +48,15 @@ is_json() {
 ends 'no command' 2
 same 'no command: help on standard error' 'Usage: scanlatch COMMAND [options] ARGUMENTS' "$(head -n 1 stderr)"
 same 'no command: nothing on standard output' '' "$stdout"
-refuses 'unknown command' 'scanlatch: there is no command "frobnicate"; the commands are check, build, prove, list' \
+refuses 'unknown command' 'scanlatch: there is no command "frobnicate"; the commands are check, build, prove, sheet, list' \
 	frobnicate good.yaml
 refuses 'option before a command' 'scanlatch: unknown option "--json" before a command' --json check good.yaml
-for command in diff draw sheet fit lift readback probe export schema; do
+for command in diff draw fit lift readback probe export schema; do
 	ends "later command $command" 2 $command good.yaml
 	same "later command $command: says so" "scanlatch: the command \"$command\" is not carried out by this version yet" \
 		"$stderr"
 done
-for command in check build prove list; do
+for command in check build prove sheet list; do
 	refuses "$command: unknown option" "scanlatch $command: unrecognized option '--frobnicate'" $command --frobnicate
 	refuses "$command: unknown short option" "scanlatch $command: invalid option -- 'x'" $command -x
 	refuses "$command: bad colour" "scanlatch $command: --color: wanted auto, always or never, found \"blue\"" \

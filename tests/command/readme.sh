@@ -56,12 +56,14 @@ holds "the README patches a chip" eval "$(shell_block 3)"
 same "the patch is one bit" 1 "$(cmp -l images/tide-board-60.rom0.bin rom0-readback.bin | wc -l)"
 holds "prove shows what the README shows" compare 3
 
-holds "the README makes mistakes" eval "$(shell_block 4)"
-holds "mistakes look as the README shows" compare 4
+holds "sheet shows what the README shows" compare 4
 
-holds "two stages look as the README shows" compare 5
-holds "a set looks as the README shows" compare 6
-same "the README shows six commands" "$(block 7)" ""
+holds "the README makes mistakes" eval "$(shell_block 4)"
+holds "mistakes look as the README shows" compare 5
+
+holds "two stages look as the README shows" compare 6
+holds "a set looks as the README shows" compare 7
+same "the README shows seven commands" "$(block 8)" ""
 
 # A block of YAML that is a plan's or a set's own text: each of its lines stands there, but for what a comment says.
 yaml_block() { awk -v wanted="$1" '/^```/ { if (inside) inside = 0; else if ($0 == "```yaml") inside = ++count == wanted; next } inside' "$readme"; }
