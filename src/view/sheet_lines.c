@@ -11,6 +11,16 @@
 
 #define COUNT_OF(array) (sizeof(array) / sizeof((array)[0]))
 
+// Longer tables are for programs to read.
+#define MOST_ROWS 120u
+#define MOST_TYPES 40u
+
+static void put_rest(struct text *out, size_t count, const char *what)
+{
+	if (count > 0)
+		page_element(out, "p", "", "%zu more %s are left out here; scanlatch check --json has them all.", count, what);
+}
+
 // "66 ticks", exactly "11/2500000 s".
 static void put_exact_ticks(struct text *words, const struct clock *clock, int64_t ticks)
 {
@@ -44,7 +54,8 @@ static void put_region_title(struct text *out, const void *context, size_t row)
 static void put_type(struct text *out, const struct timeline *timeline, size_t type, uint32_t uses)
 {
 	const struct line_view view = line_view_of(timeline, type);
-	const struct page_table table = {NULL, "regions", regions_table(&view), put_region_title};
+	struct page_table table = {NULL, "regions", regions_table(&view), put_region_title};
+	const size_t regions = table.columns.row_count;
 	struct text words = {0};
 	text_put(out, "<div class=\"line\">\n");
 	page_element(out, "h3", "", "%s", view.type->name);
@@ -52,7 +63,9 @@ static void put_type(struct text *out, const struct timeline *timeline, size_t t
 	if (view.laid->auto_stretched > 0)
 		text_printf(&words, "; stretch: auto chose %" PRIu32 " stretched, the fewest that meet the phase", view.laid->auto_stretched);
 	page_element_of(out, "p", "", &words);
+	table.columns.row_count = regions < MOST_ROWS ? regions : MOST_ROWS;
 	page_table(out, &table);
+	put_rest(out, regions - table.columns.row_count, "regions");
 	text_put(out, "</div>\n");
 }
 
@@ -98,13 +111,10 @@ static void put_block_cell(struct text *out, const void *context, size_t row, si
 	}
 }
 
-// Long lists of blocks would be no table for people.
-#define MOST_BLOCKS 200u
-
 static void put_frame(struct text *out, const struct timeline *timeline, uint32_t *first_lines)
 {
 	const struct plan *plan = timeline->plan;
-	const size_t shown = plan->block_count < MOST_BLOCKS ? plan->block_count : MOST_BLOCKS;
+	const size_t shown = plan->block_count < MOST_ROWS ? plan->block_count : MOST_ROWS;
 	const struct frame_view view = {timeline, first_lines};
 	const struct page_table table = {NULL, "blocks", {block_columns, COUNT_OF(block_columns), shown, put_block_cell, &view}, NULL};
 	struct text words = {0};
@@ -116,8 +126,7 @@ static void put_frame(struct text *out, const struct timeline *timeline, uint32_
 	text_put(&words, ". Lines are counted from 0.");
 	page_element_of(out, "p", "", &words);
 	page_table(out, &table);
-	if (shown < plan->block_count)
-		page_element(out, "p", "", "%zu more blocks are left out here; scanlatch check --json has them all.", plan->block_count - shown);
+	put_rest(out, plan->block_count - shown, "blocks");
 }
 
 void sheet_lines(struct text *out, const struct timeline *timeline)
@@ -126,8 +135,10 @@ void sheet_lines(struct text *out, const struct timeline *timeline)
 	const uint32_t *uses = arena != NULL ? count_uses(timeline, arena) : NULL;
 	uint32_t *first_lines = arena != NULL ? arena_array(arena, timeline->plan->block_count, sizeof *first_lines) : NULL;
 	out->failed = out->failed || uses == NULL || first_lines == NULL;
-	for (size_t type = 0; uses != NULL && type < timeline->plan->line_count; type++)
+	const size_t types = timeline->plan->line_count, shown = types < MOST_TYPES ? types : MOST_TYPES;
+	for (size_t type = 0; uses != NULL && type < shown; type++)
 		put_type(out, timeline, type, uses[type]);
+	put_rest(out, types - shown, "line types");
 	if (first_lines != NULL)
 		put_frame(out, timeline, first_lines);
 	arena_destroy(arena);
