@@ -136,6 +136,44 @@ char *scanlatch_manifest(const scanlatch_proofs *proofs, unsigned files);
  * strict any advice, it says so first and is not approved. NULL when memory is out. */
 char *scanlatch_sheet(const scanlatch_proofs *proofs, bool strict);
 
+/* ---- Fit: layouts of lines that suit a standard ---- */
+
+/* What is asked. Texts stay the caller's and are not needed once the search is done. */
+typedef struct scanlatch_fit_request {
+	const char *standard;      /* a name of the catalogue */
+	unsigned columns;          /* cells of picture in a line, 1 to 4096 */
+	unsigned lines;            /* lines with picture, up to 4096; 0: as many as a field of the standard has, halves left out */
+	const char *crystal;       /* names of the catalogue or frequencies, separated by commas; NULL: all of the catalogue */
+	const char *ticks_per_dot; /* whole numbers and ranges, 1 to 256: "1,2", "1-4" */
+	const char *dots_per_cell; /* the same */
+	unsigned stretched;        /* cells of a line that may be stretched at most, 0 to 64; only where there is a subcarrier */
+	unsigned width;            /* the least width of the picture, 0 to 100 percent of the published one */
+	const char *phase;         /* "every line", "every 2 lines" or "free"; only where there is a subcarrier */
+	const char *grade;         /* "studio" or "monitor" */
+	unsigned top;              /* how many layouts are kept at most, 1 to 1000 */
+} scanlatch_fit_request;
+
+/* What is not asked otherwise: all crystals, 1-4 ticks a dot, 6-16 dots a cell, 4 stretched cells, half the width, every line,
+ * monitor, 10 layouts. The standard and the columns are left to be filled in. Cannot fail. */
+scanlatch_fit_request scanlatch_fit_defaults(void);
+
+typedef struct scanlatch_fit scanlatch_fit;
+
+/* Searches; finding nothing is no failure. NULL if the request is bad, then *why says what was wanted and what was found, beginning
+ * with the member's name with "-" for "_", and is to be freed with scanlatch_free; or if memory is out, then *why is NULL. */
+scanlatch_fit *scanlatch_fit_search(const scanlatch_fit_request *request, char **why);
+void scanlatch_fit_destroy(scanlatch_fit *fit);
+
+/* How many layouts were kept. Cannot fail. */
+size_t scanlatch_fit_count(const scanlatch_fit *fit);
+
+/* What `scanlatch fit` reports, and the same as a JSON document (shape: src/view/fit.h). NULL when memory is out. */
+char *scanlatch_fit_text(const scanlatch_fit *fit);
+char *scanlatch_fit_json(const scanlatch_fit *fit);
+
+/* Layout 0 … count-1 as a complete plan, with its length in bytes. NULL when memory is out. */
+char *scanlatch_fit_plan(const scanlatch_fit *fit, size_t index, size_t *length);
+
 /* ---- Catalogues ---- */
 
 /* The catalogues of parts, of standards and of crystals as text or JSON (shapes: src/view/parts.h, standards.h, crystals.h).

@@ -26,7 +26,7 @@ static const char help[] =
 	"      --record N     data bytes in a record of Intel HEX: 16 (the default) or 32\n"
 	"      --listing      write NAME.lst too: every row of the frame\n"
 	"      --unproven     write even if a proof fails; the exit code is still 1\n"
-	"      --strict       advice that fails counts like a must\n"
+	"      --strict       advice that fails (upset, limits, glitches, speed) counts like a must\n"
 	"      --json         one JSON document instead of text (a list of them for several plans)\n"
 	"      --color WHEN   auto, always or never\n"
 	"  -h, --help         print this help\n"

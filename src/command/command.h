@@ -37,6 +37,7 @@ extern const size_t command_count;
 
 int command_build(int argument_count, char **arguments);
 int command_check(int argument_count, char **arguments);
+int command_fit(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
 int command_sheet(int argument_count, char **arguments);

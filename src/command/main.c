@@ -10,12 +10,13 @@ const struct command commands[] = {
 	{"build", "make the images of plans or sets, prove them and write them", command_build},
 	{"prove", "prove images that are there against their plan or set", command_prove},
 	{"sheet", "write the build sheet of a plan or set, a page to print and keep at the bench", command_sheet},
+	{"fit", "search line layouts that suit a standard, and write one as a plan", command_fit},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
 };
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
-static const char *const later_commands[] = {"diff", "draw", "fit", "lift", "readback", "probe", "export", "schema"};
+static const char *const later_commands[] = {"diff", "draw", "lift", "readback", "probe", "export", "schema"};
 
 static void print_help(FILE *out)
 {

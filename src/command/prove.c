@@ -19,7 +19,8 @@ static const char help[] =
 	"\n"
 	"Options:\n"
 	"      --json         one JSON document instead of text\n"
-	"      --strict       advice that fails counts like a must: exit code 1\n"
+	"      --strict       advice that fails (upset, limits, glitches, speed) counts like a must:\n"
+	"                     exit code 1\n"
 	"      --color WHEN   auto, always or never\n"
 	"  -h, --help         print this help\n"
 	"  -V, --version      print the version\n";

@@ -65,6 +65,8 @@ static const struct standard *read_own(struct reader *reader, const struct node 
 		keys[item] = (struct key){limit_item_facts((enum limit_item)item)->name, KEY_OPTIONAL};
 	if (values[OWN_LIMITS] != NULL)
 		read_mapping(reader, values[OWN_LIMITS], "limits", keys, ITEM_COUNT, own);
+	if (values[OWN_BASE] == NULL && (values[OWN_LIMITS] == NULL || values[OWN_LIMITS]->count == 0))
+		diagnose(reader->diagnostics, RULE_MISSING_KEY, node->place, "a standard of one's own needs limits, or the key \"base\"");
 	const struct standard *base = values[OWN_BASE] != NULL ? read_named(reader, values[OWN_BASE], "base") : NULL;
 	*standard = base != NULL ? *base : (struct standard){.name = "own", .title = "the plan's own limits", .documents = "", .fields = 1};
 	standard->limits = limits;

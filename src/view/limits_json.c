@@ -40,7 +40,6 @@ static json_t *verdict_json(const struct proofs *proofs, const struct limit *lim
 		put_value(&object, "low", limit->item, limit->low);
 	if (limit->has_high)
 		put_value(&object, "high", limit->item, limit->high);
-	json_put(&object, "source", json_string(limit->source));
 	if (!verdict->known || !verdict->judgement.binds)
 		return object;
 	json_put(&object, "kept", json_boolean(verdict->judgement.kept));
@@ -137,6 +136,8 @@ void json_put_limits(json_t **object, const struct proofs *proofs)
 		if (limits->rows[item].grades[GRADE_STUDIO].has_limit || limits->rows[item].grades[GRADE_MONITOR].has_limit)
 			json_append(&items, item_json(proofs, (enum limit_item)item));
 	json_put(object, "items", items);
+	if (limits->no_vertical_sync)
+		json_put(object, "no_vertical_sync", json_true());
 	for (uint32_t index = 0; index < measurement->field_count && index < MOST_FIELDS; index++)
 		json_append(&fields, field_json(measurement, index));
 	json_put(object, "fields", fields);

@@ -174,6 +174,10 @@ static void detail_limits(struct report *report)
 {
 	if (report->proofs->proof[PROOF_LIMITS].counterexample.present)
 		detail_counterexample(report, PROOF_LIMITS);
+	if (report->proofs->limits.no_vertical_sync) {
+		text_put(&report->words, "vertical sync never comes: there is no broad pulse, and no signal with the role vertical sync is asserted");
+		end_detail(report);
+	}
 	for (size_t item = 0; item < ITEM_COUNT; item++) {
 		if (!limit_is_missed(report->proofs, (enum limit_item)item))
 			continue;

@@ -16,7 +16,10 @@ static const char *const words[] = {
 	"chips", "part", "speed", "label", "address", "next", "bank", "parts", "access", "timing", "share", "margin",
 	"latch", "delay", "setup", "sweep", "within", "Hz", "MHz", "us", "ns", "ticks", "dots", "ppm", "28C16",
 	"28C64", "28C256", "27C1024", "27C080", "XROM", "col", "row", "0x10", "standard", "grade", "kind", "stage",
-	"step", "line-frame", "loop", "kind.0", "state.0", "bits", NULL,
+	"step", "line-frame", "loop", "kind.0", "state.0", "bits", "composite", "horizontal", "vertical", "burst", "gate",
+	"composite-525", "composite-625", "dmt-640x480-60", "studio", "monitor", "base", "limits", "exactly", "at least", "at most",
+	"line rate", "horizontal sync width", "front porch", "burst length in cycles", "picture top", "lines without burst", "kHz", "pulses",
+	"cycles", NULL,
 };
 
 static void require_text(char *text)
@@ -165,6 +168,25 @@ static void spoil_and_prove(const scanlatch_images *made, uint64_t *random, scan
 	scanlatch_images_destroy(read);
 }
 
+// Images that were made show at their pins what the plan means, leads undone: so the same is measured, and judged, of both.
+static void require_limits(const scanlatch_images *made, const scanlatch_proofs *proofs)
+{
+	struct proofs *planned = fuzz_need(proofs_of_plan(made->plan->members[0].timeline));
+	const struct limits_result *one = &planned->limits, *other = &proofs->proofs[0]->limits;
+	FUZZ_REQUIRE(planned->proof[PROOF_LIMITS].verdict == verdict_of(proofs, PROOF_LIMITS));
+	FUZZ_REQUIRE((one->measurement == NULL) == (other->measurement == NULL));
+	for (unsigned item = 0; one->measurement != NULL && item < ITEM_COUNT; item++) {
+		const struct measured *plan = &one->measurement->items[item], *pins = &other->measurement->items[item];
+		FUZZ_REQUIRE(plan->known == pins->known);
+		FUZZ_REQUIRE(fraction_compare(plan->values.low, pins->values.low) == 0 && fraction_compare(plan->values.high, pins->values.high) == 0);
+		FUZZ_REQUIRE(plan->low_at.from_cell == pins->low_at.from_cell && plan->high_at.to_cell == pins->high_at.to_cell);
+		FUZZ_REQUIRE(fraction_compare(plan->values.low, plan->values.high) <= 0);
+	}
+	for (unsigned grade = 0; grade < GRADE_COUNT; grade++)
+		FUZZ_REQUIRE(one->kept[grade] == other->kept[grade] && one->missed[grade] == other->missed[grade]);
+	proofs_destroy(planned);
+}
+
 static void judge_images(const scanlatch_images *made, uint64_t random, bool colour_kept, scanlatch_messages *messages)
 {
 	const struct timeline *timeline = made->plan->members[0].timeline;
@@ -175,6 +197,7 @@ static void judge_images(const scanlatch_images *made, uint64_t random, bool col
 	const bool sweep_kept = verdict_of(proofs, PROOF_SWEEP) != VERDICT_FAIL;
 	FUZZ_REQUIRE((verdict_of(proofs, PROOF_COLOUR) != VERDICT_FAIL) == colour_kept);
 	FUZZ_REQUIRE(scanlatch_proofs_failed(proofs, false) == !(colour_kept && sweep_kept));
+	require_limits(made, proofs);
 	require_json(scanlatch_manifest(proofs, SCANLATCH_FILE_BIN | SCANLATCH_FILE_HEX));
 	scanlatch_proofs_destroy(proofs);
 	require_text(scanlatch_images_listing(made));
