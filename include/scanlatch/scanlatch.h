@@ -185,6 +185,15 @@ char *scanlatch_standards_json(void);
 char *scanlatch_crystals_text(void);
 char *scanlatch_crystals_json(void);
 
+/* ---- Schemas: JSON Schema (draft 2020-12) of the languages and of the reports ---- */
+
+/* How many there are: of the languages of plans, sets and boards, of each report in JSON, and of the manifest. Cannot fail. */
+size_t scanlatch_schema_count(void);
+/* The name of schema 0 … count-1: "plan", "set", "board", then those of reports. Cannot fail. */
+const char *scanlatch_schema_name(size_t schema);
+/* One of them as a JSON document. NULL when memory is out. */
+char *scanlatch_schema_json(size_t schema);
+
 #ifdef __cplusplus
 }
 #endif

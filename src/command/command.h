@@ -40,6 +40,7 @@ int command_check(int argument_count, char **arguments);
 int command_fit(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
+int command_schema(int argument_count, char **arguments);
 int command_sheet(int argument_count, char **arguments);
 
 // Long options without a short one: values above any character.

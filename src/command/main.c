@@ -12,11 +12,12 @@ const struct command commands[] = {
 	{"sheet", "write the build sheet of a plan or set, a page to print and keep at the bench", command_sheet},
 	{"fit", "search line layouts that suit a standard, and write one as a plan", command_fit},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
+	{"schema", "print a JSON Schema of plans, sets, boards or reports", command_schema},
 };
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
-static const char *const later_commands[] = {"diff", "draw", "lift", "readback", "probe", "export", "schema"};
+static const char *const later_commands[] = {"diff", "draw", "lift", "readback", "probe", "export"};
 
 static void print_help(FILE *out)
 {

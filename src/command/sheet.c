@@ -89,12 +89,23 @@ static int make_page(struct sheet_job *job, const char *path, bool strict, struc
 	return job->page != NULL && job->missed != NULL ? EXIT_GOOD : EXIT_SYSTEM;
 }
 
+// "limits, speed" as a list.
+static json_t *missed_json(const char *missed)
+{
+	json_t *list = json_array();
+	for (size_t length; *missed != '\0'; missed += length + strspn(missed + length, ", ")) {
+		length = strcspn(missed, ",");
+		json_append(&list, json_stringn(missed, length));
+	}
+	return list;
+}
+
 static int print_json(const struct sheet_options *options, const struct sheet_job *job, bool kept)
 {
 	json_t *document = json_object();
 	json_put(&document, "name", json_string(scanlatch_plan_name(job->plan)));
 	json_put(&document, "failed", json_boolean(job->failed));
-	json_put(&document, "missed", json_string(job->missed));
+	json_put(&document, "missed", missed_json(job->missed));
 	json_put(&document, "file", json_string(options->output));
 	json_put(&document, "bytes", json_integer((json_int_t)strlen(job->page)));
 	json_put(&document, "kept", json_boolean(kept));

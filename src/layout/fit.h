@@ -176,8 +176,9 @@ struct fit_result {
 
 enum fit_status { FIT_OK, FIT_OUT_OF_MEMORY, FIT_TOO_MANY, FIT_UNFIT };
 
-// Searches the space; the result is in the arena. Nothing is changed unless it is FIT_OK. FIT_TOO_MANY: it has more than FIT_LIMIT_CELLS
-// kinds of cells, or a crystal more than FIT_LIMIT_CHOICES choices. FIT_UNFIT: a limit of a layout that was found could not be judged in 64-bit fractions.
+// Searches the space; the result is in the arena. Nothing is changed unless it is FIT_OK. FIT_TOO_MANY: it has more than
+// FIT_LIMIT_CELLS kinds of cells, or a crystal more than FIT_LIMIT_CHOICES choices. FIT_UNFIT: a limit of a layout that was found
+// could not be judged in 64-bit fractions.
 enum fit_status fit_search(struct arena *arena, const struct fit_space *space, struct fit_result *result);
 
 // Lines with picture that a standard has, halves left out: the published height of a field, or the middle of its range. 0 if it

@@ -200,9 +200,13 @@ static bool choose_memory(struct fit_crystal *crystal, struct fit_rank *rank)
 {
 	const struct fit_line *line = &rank->line;
 	const int64_t cells = line->cells * rank->frame.lines;
-	struct fraction cell_s, access_s = FRACTION_ZERO;
-	if (fraction_divide(fraction_whole(line->cell_ticks), crystal->master_hz, &cell_s) &&
-	    fit_memory_find(crystal->space->parts, cells, signals_of(crystal, line), cell_s, &rank->memory, &access_s))
+	struct fraction cell_s, access_s;
+	if (!fraction_divide(fraction_whole(line->cell_ticks), crystal->master_hz, &cell_s) ||
+	    !fit_memory_access(crystal->space->parts, cell_s, &access_s)) {
+		crystal->meter.unfit = true;
+		return false;
+	}
+	if (fit_memory_find(crystal->space->parts, cells, signals_of(crystal, line), access_s, &rank->memory))
 		return true;
 	if (wants_note(crystal, FIT_MEMORY))
 		note(crystal, (struct fit_obstacle){.condition = FIT_MEMORY, .line = *line, .lines = rank->frame.lines,

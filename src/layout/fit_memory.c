@@ -10,13 +10,15 @@ unsigned fit_state_bits(int64_t values)
 	return bits;
 }
 
-// What the latch, its inputs and the margin leave of a cell for the memory. False if it does not fit.
-static bool find_access(const struct catalogue *parts, struct fraction cell_s, struct fraction *access_s)
+bool fit_memory_access(const struct catalogue *parts, struct fraction cell_s, struct fraction *access_s)
 {
 	const struct logic_part *latch = catalogue_logic(parts, FIT_LATCH);
-	const struct fraction margin_s = {FIT_MARGIN_NS / 10, 100000000};
-	return latch != NULL && fraction_subtract(cell_s, latch->delay_s, access_s) &&
-	       fraction_subtract(*access_s, latch->setup_s, access_s) && fraction_subtract(*access_s, margin_s, access_s);
+	struct fraction needed, left_s;
+	if (latch == NULL || !fraction_make(FIT_MARGIN_NS, 1000000000, &needed) || !fraction_add(needed, latch->delay_s, &needed) ||
+	    !fraction_add(needed, latch->setup_s, &needed) || !fraction_subtract(cell_s, needed, &left_s))
+		return false;
+	*access_s = left_s;
+	return true;
 }
 
 // The slowest grade of a part that will do; NULL if none will.
@@ -37,16 +39,14 @@ static bool is_better(const struct fit_memory *memory, const struct fit_memory *
 	return fraction_compare(memory->access_s, other->access_s) > 0;
 }
 
-bool fit_memory_find(const struct catalogue *parts, int64_t cells, unsigned signals, struct fraction cell_s,
-                     struct fit_memory *memory, struct fraction *access_s)
+bool fit_memory_find(const struct catalogue *parts, int64_t cells, unsigned signals, struct fraction access_s,
+                     struct fit_memory *memory)
 {
 	const unsigned bits = fit_state_bits(cells);
 	struct fit_memory best = {0};
-	if (!find_access(parts, cell_s, access_s))
-		return false;
 	for (size_t index = 0; index < parts->part_count; index++) {
 		const struct part *part = &parts->parts[index];
-		const struct access_grade *grade = find_grade(part, *access_s);
+		const struct access_grade *grade = find_grade(part, access_s);
 		if (part->address_pins < bits || grade == NULL)
 			continue;
 		const unsigned word = bits + signals, chips = (word + part->data_pins - 1) / part->data_pins;

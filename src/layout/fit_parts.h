@@ -57,11 +57,13 @@ struct fit_framing fit_frames_find(struct fit_frames *frames, struct fit_meter *
 // The bits of a state of so many values, 1 at least. Cannot fail.
 unsigned fit_state_bits(int64_t values);
 
-// Chooses a memory for a loop of so many cells and signals whose shortest cell lasts cell_s: the fewest chips, then the fewest
-// address pins, then the slowest grade that will do. False, with *memory as it was, if no part will; *access_s is then what a
-// part would need.
-bool fit_memory_find(const struct catalogue *parts, int64_t cells, unsigned signals, struct fraction cell_s,
-                     struct fit_memory *memory, struct fraction *access_s);
+// What latch, setup and margin leave of a cell for the memory; it may be negative. False, with *access_s as it was, if it does not fit.
+bool fit_memory_access(const struct catalogue *parts, struct fraction cell_s, struct fraction *access_s);
+
+// Chooses a memory for a loop of so many cells and signals that answers in access_s: the fewest chips, then the fewest address
+// pins, then the slowest grade that will do. False, with *memory as it was, if no part will.
+bool fit_memory_find(const struct catalogue *parts, int64_t cells, unsigned signals, struct fraction access_s,
+                     struct fit_memory *memory);
 
 // Measures a layout's items and judges them at the space's grade. False if a number does not fit.
 bool fit_measure(const struct fit_space *space, struct fit_layout *layout);

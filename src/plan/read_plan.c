@@ -27,13 +27,44 @@ enum {
 	PLAN_KEYS
 };
 
+// What plans and boards have both.
+#define BOARD_KEYS \
+	[PLAN_VERSION] = {"scanlatch", KEY_REQUIRED, &version_shape, "The version of the plan language"}, \
+	[PLAN_NAME] = {"name", KEY_REQUIRED, &file_stem_shape, "Begins the names of the files that are written"}, \
+	[PLAN_NOTE] = {"note", KEY_OPTIONAL, &note_shape, "What the board is, for reports"}, \
+	[PLAN_STANDARD] = {"standard", KEY_OPTIONAL, &standard_shape, "What to measure against: a standard of the catalogue, or one's own"}, \
+	[PLAN_GRADE] = {"grade", KEY_OPTIONAL, &grade_shape, \
+	                "studio: the published limits; monitor (what it is when left out): what receivers and monitors accept"}, \
+	[PLAN_CLOCK] = {"clock", KEY_REQUIRED, &clock_shape, "The master clock, and what is divided from it"}, \
+	[PLAN_SIGNALS] = {"signals", KEY_REQUIRED, &signals_shape, "The control lines of the board, in the order of the word's bits"}, \
+	[PLAN_MACHINE] = {"machine", KEY_REQUIRED, &machine_shape, "The form of the sequencer and its state"}, \
+	[PLAN_PARTS] = {"parts", KEY_OPTIONAL, &parts_shape, "Memories that the catalogue does not have, by name"}, \
+	[PLAN_CHIPS] = {"chips", KEY_REQUIRED, &chips_shape, "The EEPROMs, and what is wired to their pins"}, \
+	[PLAN_TIMING] = {"timing", KEY_OPTIONAL, &timing_shape, "The parts around the EEPROMs, for the proof of speed"}, \
+	[PLAN_SWEEP] = {"sweep", KEY_OPTIONAL, &sweeps_shape, "State bits whose values must all come up within a time"}, \
+	[PLAN_BANK] = {"bank", KEY_ELSEWHERE, NULL, NULL}, \
+	[PLAN_BANKS] = {"banks", KEY_ELSEWHERE, NULL, NULL}
+
 static const struct key plan_keys[PLAN_KEYS] = {
-	[PLAN_VERSION] = {"scanlatch", KEY_REQUIRED}, [PLAN_NAME] = {"name", KEY_REQUIRED},     [PLAN_NOTE] = {"note", KEY_OPTIONAL},
-	[PLAN_STANDARD] = {"standard", KEY_OPTIONAL}, [PLAN_GRADE] = {"grade", KEY_OPTIONAL},   [PLAN_CLOCK] = {"clock", KEY_REQUIRED},
-	[PLAN_SIGNALS] = {"signals", KEY_REQUIRED},   [PLAN_LINES] = {"lines", KEY_REQUIRED},   [PLAN_FRAME] = {"frame", KEY_REQUIRED},
-	[PLAN_MACHINE] = {"machine", KEY_REQUIRED},   [PLAN_PARTS] = {"parts", KEY_OPTIONAL},   [PLAN_CHIPS] = {"chips", KEY_REQUIRED},
-	[PLAN_TIMING] = {"timing", KEY_OPTIONAL},     [PLAN_SWEEP] = {"sweep", KEY_OPTIONAL},   [PLAN_BANK] = {"bank", KEY_ELSEWHERE},
-	[PLAN_BANKS] = {"banks", KEY_ELSEWHERE},
+	BOARD_KEYS,
+	[PLAN_LINES] = {"lines", KEY_REQUIRED, &lines_shape, "The line types, by name: what regions each is made of"},
+	[PLAN_FRAME] = {"frame", KEY_REQUIRED, &frame_shape, "Blocks of lines, in order; the sequencer loops over them for ever"},
+};
+
+// A board is everything but lines and frame; those of a plan that is given in its place are passed over.
+static const struct key board_keys[PLAN_KEYS] = {
+	BOARD_KEYS,
+	[PLAN_LINES] = {"lines", KEY_OPTIONAL, &lines_shape, "Of a plan in a board's place; passed over"},
+	[PLAN_FRAME] = {"frame", KEY_OPTIONAL, &frame_shape, "Of a plan in a board's place; passed over"},
+};
+
+const struct shape plan_shape = {
+	.kind = SHAPE_MAPPING, .about = "What every line of the picture is made of, and what the board looks like",
+	.keys = plan_keys, .key_count = PLAN_KEYS,
+};
+const struct shape board_shape = {
+	.kind = SHAPE_MAPPING, .about = "What a board looks like: a plan without lines and frame",
+	.keys = board_keys, .key_count = PLAN_KEYS,
 };
 
 #define OF_A_SET "that is of a set, which begins with scanlatch-set: 1"
@@ -43,9 +74,17 @@ static const struct stray_key set_strays[] = {{"bank", OF_A_SET}, {"banks", OF_A
 // Longest name of a plan or set: with a label and an ending it must still make a file name.
 #define STEM_CHARACTERS 100
 
+static const char *const versions[] = {"1"};
+
+const struct shape version_shape = {.kind = SHAPE_CHOICE, .words = versions, .word_count = COUNT_OF(versions)};
+const struct shape file_stem_shape = {
+	.kind = SHAPE_TEXT, .about = "1 to 100 lower-case letters, digits and -, not starting with -",
+	.pattern = "[a-z0-9][a-z0-9-]*", .most = STEM_CHARACTERS, .also = ALSO_NUMBER | ALSO_TRUTH,
+};
+
 void read_version(struct reader *reader, const struct node *node, const char *what)
 {
-	if (node->kind == NODE_SCALAR && strcmp(node->text, "1") == 0)
+	if (node->kind == NODE_SCALAR && strcmp(node->text, versions[0]) == 0)
 		return;
 	if (!expect_kind(reader, node, NODE_SCALAR, what))
 		return;

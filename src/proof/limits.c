@@ -142,7 +142,9 @@ static void find_move(const struct trial *trial, enum limit_item item, const str
 	const int64_t cells = setting->sign * fewest_cells(&shift, &moved);
 	if (cells == 0)
 		return;
-	const struct measured_at *at = cells * setting->sign > 0 ? &measured->low_at : &measured->high_at;
+	// The line with the highest rate is the one with the lowest period.
+	const bool of_low = (cells * setting->sign > 0) != (limit_item_facts(item)->dimension == DIMENSION_FREQUENCY);
+	const struct measured_at *at = of_low ? &measured->low_at : &measured->high_at;
 	const uint32_t cell = setting->at_start ? at->from_cell : at->to_cell;
 	if (cell == UINT32_MAX || (setting->move == MOVE_EDGE && !has_room(trial->timeline, cell, cells)))
 		return;

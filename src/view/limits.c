@@ -23,7 +23,13 @@ static const struct limit *limit_at(const struct proofs *proofs, enum limit_item
 	return standard_limit(plan_of_proofs(proofs)->standard, item, grade);
 }
 
-// Values at 3 decimals, as times are everywhere; frequencies at 6.
+// Values at 3 decimals, as times are everywhere; frequencies below 100 at 6, since the limits of field rates are as narrow as that.
+static unsigned places_of(enum limit_item item, struct fraction scaled)
+{
+	const int64_t size = scaled.numerator / scaled.denominator;
+	return limit_item_facts(item)->dimension == DIMENSION_FREQUENCY && size > -100 && size < 100 ? 6 : 3;
+}
+
 static void put_value(struct text *out, enum limit_item item, struct fraction value)
 {
 	struct fraction scaled;
@@ -31,7 +37,7 @@ static void put_value(struct text *out, enum limit_item item, struct fraction va
 	if (facts->is_polarity)
 		put_limit_value(out, item, value);
 	else if (limit_value_in_unit(item, value, &scaled))
-		text_put_rounded(out, scaled, facts->dimension == DIMENSION_FREQUENCY ? 6 : 3);
+		text_put_rounded(out, scaled, places_of(item, scaled));
 	else
 		text_put(out, "?");
 }
@@ -235,18 +241,62 @@ void put_limits_heading(struct text *out, const struct proofs *proofs)
 	            plan_of_proofs(proofs)->clock.has_accuracy ? "; margins with the clock's accuracy" : "");
 }
 
-void put_limits_notes(struct text *out, const struct proofs *proofs, put_note *put)
-{
-	put_all_unmeasured(out, proofs, put);
-	put_burstless(out, proofs->limits.measurement, put);
-}
-
 static void put_wrapped_note(struct text *out, struct text *words)
 {
 	text_put_wrapped(out, text_string(words), 0, 2);
 	text_put(out, "\n");
 	out->failed = out->failed || words->failed;
 	text_release(words);
+}
+
+// How far the picture's middle is from the standard's, at its farther end. False if it is not known.
+static bool find_offset(const struct proofs *proofs, enum limit_item item, struct fraction *offset)
+{
+	const struct measured *measured = &proofs->limits.measurement->items[item];
+	const struct limit *limit = limit_at(proofs, item, plan_of_proofs(proofs)->grade);
+	struct fraction low, high, both;
+	if (limit == NULL || !limit->has_nominal || !measured->known || !fraction_subtract(measured->values.low, limit->nominal, &low) ||
+	    !fraction_subtract(measured->values.high, limit->nominal, &high) || !fraction_add(low, high, &both))
+		return false;
+	*offset = both.numerator < 0 ? low : high;
+	return true;
+}
+
+static void put_offset(struct text *words, enum limit_item item, struct fraction offset, const char *less, const char *more)
+{
+	const bool is_less = offset.numerator < 0;
+	if (offset.numerator == 0) {
+		text_printf(words, "neither %s nor %s", less, more);
+		return;
+	}
+	if (is_less)
+		offset.numerator = -offset.numerator;
+	put_value_unit(words, item, offset);
+	text_printf(words, " %s", is_less ? less : more);
+}
+
+static void put_centring(struct text *out, const struct proofs *proofs, put_note *put)
+{
+	struct fraction across, down;
+	struct text words = {0};
+	if (!find_offset(proofs, ITEM_HORIZONTAL_CENTRE, &across) || !find_offset(proofs, ITEM_VERTICAL_CENTRE, &down))
+		return;
+	if (across.numerator == 0 && down.numerator == 0) {
+		text_put(&words, "the picture's middle is where the standard has it");
+	} else {
+		text_put(&words, "the picture's middle, from the standard's: ");
+		put_offset(&words, ITEM_HORIZONTAL_CENTRE, across, "to the left", "to the right");
+		text_put(&words, ", ");
+		put_offset(&words, ITEM_VERTICAL_CENTRE, down, "up", "down");
+	}
+	put(out, &words);
+}
+
+void put_limits_notes(struct text *out, const struct proofs *proofs, put_note *put)
+{
+	put_centring(out, proofs, put);
+	put_all_unmeasured(out, proofs, put);
+	put_burstless(out, proofs->limits.measurement, put);
 }
 
 void view_limits(struct text *out, const struct proofs *proofs)

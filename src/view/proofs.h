@@ -65,6 +65,7 @@ void view_must(struct text *out, const char *name, bool kept, const char *words,
 //                 "low", "high": measured over the frame, "accuracy_low", "accuracy_high" (where the clock's accuracy widens
 //                 them), "low_at", "high_at": { PLACE } where the first of them begins, or in place of all these
 //                 "not_measured": why, in words; "studio", "monitor": { "nominal", "low", "high" (those that there are; list standards has their sources),
+//                 of the picture's middle "offset_low", "offset_high" (measured less nominal),
 //                 and if one of low and high is there "kept", "margin" (to the nearer bound; below zero: missed by so much),
 //                 "share" (of the tolerance; not where low is high), "move": what would keep it, if whole cells do: { "what":
 //                 "edge", "picture" or "line length", "cells" (later, or longer; negative: earlier, shorter), "line_type", of an

@@ -183,6 +183,9 @@ static void detail_limits(struct report *report)
 			continue;
 		put_limit_miss(&report->words, report->proofs, (enum limit_item)item);
 		end_detail(report);
+		// Where pulses are stray, what is measured may be of them.
+		if (report->proofs->limits.measurement->strays > 0)
+			continue;
 		text_put(&report->words, "hint: ");
 		if (put_limit_move(&report->words, report->proofs, (enum limit_item)item))
 			end_detail(report);

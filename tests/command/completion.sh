@@ -22,7 +22,7 @@ cd "$folder" || exit 1
 touch tide.yaml tide.yml tide.txt tide.html tide.rom0.bin tide.rom0.hex 'two words.yaml'
 mkdir images
 
-same 'commands' $'build\ncheck\nfit\nlist\nprove\nsheet' "$(offered '')"
+same 'commands' $'build\ncheck\nfit\nlist\nprove\nschema\nsheet' "$(offered '')"
 same 'a command begun' 'prove' "$(offered pr)"
 same 'plans and folders' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered check '')"
 same 'images too, to be proved' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yaml\ntide.yml\ntwo words.yaml' \
@@ -38,6 +38,7 @@ same 'standards to fit' $'composite-525\ncomposite-625' "$(offered fit --standar
 same 'grades' $'monitor\nstudio' "$(offered fit --grade '')"
 same 'a file to write' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered fit --write 1 '')"
 same 'catalogues' $'crystals\nparts\nstandards' "$(offered list '')"
+same 'schemas' "$("$SCANLATCH" schema '?' 2>&1 | sed -n 's/.*there are //p' | tr -d ' ' | tr , '\n' | sort)" "$(offered schema '')"
 same 'options before a command' $'--help\n--version' "$(offered -)"
 same 'an option begun' '--unproven' "$(offered build --u)"
 same 'options after arguments' '--strict' "$(offered check tide.yaml --s)"
@@ -48,7 +49,7 @@ same 'every standard of the catalogue' \
 	"$("$SCANLATCH" list standards --json | sed -n 's/^      "name": "\(.*\)",$/\1/p' | sort)" "$(offered fit --standard '')"
 long_options='(^|[^-A-Za-z])--[a-z]+(-[a-z]+)*'
 page=$(sed 's/\\-/-/g; s/\\f.//g' src/command/scanlatch.1)
-for command in check build prove sheet fit list; do
+for command in check build prove sheet fit list schema; do
 	options=$("$SCANLATCH" "$command" --help | grep -oE -- "$long_options" | grep -oE -- '--[a-z-]+' | sort -u)
 	same "$command: completion offers the options that its help names" "$options" "$(offered "$command" --)"
 	for option in $options; do

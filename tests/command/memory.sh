@@ -64,4 +64,5 @@ refused_below build build "$plan" --listing -o "$work/out"
 refused_below sheet sheet "$plan" -o "$work/out/sheet.html"
 refused_below prove prove --json "$plan" "$work/images"
 refused_below fit fit --standard composite-625 --columns 80
+refused_below schema schema
 finish

@@ -132,7 +132,7 @@ holds 'advice fails, --strict: not approved' grep -q '✗ NOT APPROVED' strict.h
 holds 'advice fails, --strict: why' grep -q 'Advice missed: speed. It was asked to count like a must (--strict).' strict.html
 
 "$SCANLATCH" sheet --json slow.yaml -o json.html >stdout
-same '--json' "{'name': 'tide-board-60', 'failed': False, 'missed': 'speed', 'file': 'json.html', 'bytes': $(stat -c %s json.html), 'kept': False}" \
+same '--json' "{'name': 'tide-board-60', 'failed': False, 'missed': ['speed'], 'file': 'json.html', 'bytes': $(stat -c %s json.html), 'kept': False}" \
 	"$(python3 -c 'import json, sys; print(json.load(sys.stdin))' <stdout)"
 
 # Bad input. Nothing is written.

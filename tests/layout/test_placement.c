@@ -105,7 +105,8 @@ static void most_limits_then_leftmost(void **state)
 	assert_share(&placements->second, 1, 1);
 	assert_stretched(&laid, 1, "S..S..............");
 	assert_int_equal(laid.timeline->types[1].ticks, 168);
-	assert_int_equal(laid.timeline->types[1].regions[3].start_ticks, 51); // 2 + 1 + 2 cells and two stretches
+	assert_int_equal(laid.timeline->types[1].regions[2].start_ticks, 30); // 2 + 1 cells and a stretch
+	assert_int_equal(laid.timeline->types[1].regions[2].stretched, 1);
 	release(&laid);
 }
 
@@ -224,7 +225,7 @@ static void nothing_to_decide(void **state)
 		assert_stretched(&laid, 1, "SS................");
 		release(&laid);
 	}
-	struct laid laid = lay_text(HEAD("", OWN("burst length: 20 us to 22 us"), SIGNALS) BROAD
+	struct laid laid = lay_text(HEAD("", OWN("picture width: 20 us to 22 us"), SIGNALS) BROAD
 	                            "  picture:\n    regions:\n"
 	                            "      - { region: sync, cells: 2, assert: [sync, blank] }\n"
 	                            "      - { region: picture, cells: 16, stretch: auto }\n" FRAME);
@@ -252,6 +253,34 @@ static void segments_go_from_edge_to_edge(void **state)
 	assert_int_equal(placements->segments[1].cells[1], 7);
 	assert_counts(placements, &placements->best, "02");
 	assert_stretched(&laid, 1, "...S...S..........");
+	release(&laid);
+}
+
+// An edge may be at the second cell of a line.
+static void a_segment_of_one_cell(void **state)
+{
+	(void)state;
+	struct laid laid = lay_text(HEAD("", OWN("horizontal sync width: at most 10 us"), SIGNALS) BROAD
+	                            "  picture:\n    regions:\n"
+	                            "      - { region: sync, cells: 1, assert: [sync, blank], stretch: auto }\n"
+	                            "      - { region: rest, cells: 17, assert: [blank], stretch: auto }\n" FRAME);
+	const struct placements *placements = placements_of(&laid);
+	assert_int_equal(placements->segment_count, 2);
+	assert_counts(placements, &placements->best, "02");
+	release(&laid);
+}
+
+// A pulse of 4 cells is normal with 36 us, but broad with 39, a quarter of a line: what a stretched cell does cannot be added up.
+static void a_cell_that_changes_a_pulse_to_another(void **state)
+{
+	(void)state;
+	struct laid laid = lay_text(HEAD("", OWN("horizontal sync width: at most 36 us"), SIGNALS) BROAD
+	                            "  plain: { regions: [ { region: sync, cells: 2, assert: [sync, blank] }, { region: rest, cells: 15, assert: [blank], stretch: 1 } ] }\n"
+	                            "  wide: { regions: [ { region: sync, cells: 4, assert: [sync, blank], stretch: auto }, { region: rest, cells: 13, assert: [blank], stretch: auto } ] }\n"
+	                            "frame: [ { repeat: 1, line: broad }, { repeat: 5, line: plain }, { repeat: 2, line: wide }, { repeat: 2, line: plain } ]\n");
+	assert_true(placements_of(&laid)->unweighed);
+	assert_false(placements_of(&laid)->judged);
+	assert_stretched(&laid, 2, "S................");
 	release(&laid);
 }
 
@@ -378,6 +407,8 @@ int main(void)
 		cmocka_unit_test(the_accuracy_counts),
 		cmocka_unit_test(nothing_to_decide),
 		cmocka_unit_test(segments_go_from_edge_to_edge),
+		cmocka_unit_test(a_segment_of_one_cell),
+		cmocka_unit_test(a_cell_that_changes_a_pulse_to_another),
 		cmocka_unit_test(separate_sync_makes_edges),
 		cmocka_unit_test(what_is_stretched_by_name_stays),
 		cmocka_unit_test(several_line_types),

@@ -96,6 +96,18 @@ static void lines_belong_to_the_nearest_field(void **state)
 	erase(drawn);
 }
 
+// A line half way between two fields is the later one's: of 5 lines, the third.
+static void a_line_half_way_between_fields(void **state)
+{
+	(void)state;
+	struct drawn *drawn = DRAW(BROAD, BURST, PLAIN, BURST, BURST, BROAD, BURST, BURST, BURST, BURST);
+	const struct measurement *found = measure(drawn);
+	assert_int_equal(found->field_count, 2);
+	assert_int_equal(found->fields[0].burstless_lines, 2); // that at line 5
+	assert_int_equal(found->fields[1].burstless_lines, 1);
+	erase(drawn);
+}
+
 // Wherever the frame begins, and so whichever field is found first.
 static void pauses_of_the_standard(void **state)
 {
@@ -200,6 +212,7 @@ int main(void)
 		cmocka_unit_test(numbers_go_around),
 		cmocka_unit_test(a_long_vertical_interval),
 		cmocka_unit_test(lines_belong_to_the_nearest_field),
+		cmocka_unit_test(a_line_half_way_between_fields),
 		cmocka_unit_test(pauses_of_the_standard),
 		cmocka_unit_test(pauses_that_differ),
 		cmocka_unit_test(sequences_of_four_fields),

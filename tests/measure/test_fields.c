@@ -83,6 +83,45 @@ static void vertical_sync_that_begins_late(void **state)
 	erase(drawn);
 }
 
+// Vertical sync that begins with the trace's first line is the first field's.
+static void vertical_sync_at_the_first_line(void **state)
+{
+	(void)state;
+	struct drawn *drawn = DRAW("wwvvvvvvvvvvvvvv", "hh--------------", "hh--------------", "wwvvvvvvvvvvvvvv", "hh--------------");
+	struct raster raster = found_in(drawn, 1);
+	assert_int_equal(raster.field_count, 2);
+	assert_field(&raster, 0, 0, 320, 0, 0, false);
+	assert_field(&raster, 1, 3 * 320, 4 * 320, 480, 48, false);
+	erase(drawn);
+}
+
+// Fields that are off their lines by two cells and by four: what the second is off more, a sixteenth of a line and more, stays. Its own line
+// is still its first, with the number that the standard has for it.
+static void vertical_sync_that_is_uneven(void **state)
+{
+	(void)state;
+	struct drawn *drawn = DRAW("hhvv--..........", "hhb---..........", "hhb-------------", "hhb-vv..........", "hhb---..........", "hhb-------------");
+	drawn->standard.vertical_sync_line = 4;
+	const struct measurement *found = measure(drawn);
+	assert_int_equal(found->field_count, 2);
+	assert_item(found, ITEM_PICTURE_TOP, "-1/8", "0"); // two cells of 16
+	assert_item(found, ITEM_LINES_PER_FIELD, "23/8", "25/8");
+	assert_int_equal(found->burstless_count, 1);
+	assert_int_equal(found->burstless[0].field, 0);
+	assert_int_equal(found->burstless[0].first_line, 1);
+	erase(drawn);
+	drawn = DRAW("hhvv------------", "hhb-------------", "hhb-------------", "hh--vv----------", "hh--------------", "hhb-------------");
+	drawn->standard.vertical_sync_line = 1;
+	found = measure(drawn);
+	assert_int_equal(found->burstless_count, 2);
+	for (uint32_t run = 0; run < 2; run++) {
+		assert_int_equal(found->burstless[run].field, run);
+		assert_int_equal(found->burstless[run].first_line, 1);
+		assert_int_equal(found->burstless[run].last_line, 1 + run);
+	}
+	erase(drawn);
+}
+
 // The same, early: two cells before 0H.
 static void vertical_sync_that_begins_early(void **state)
 {
@@ -159,6 +198,8 @@ int main(void)
 		cmocka_unit_test(fields_of_composite_sync),
 		cmocka_unit_test(half_way_is_from_a_quarter_to_three_quarters),
 		cmocka_unit_test(vertical_sync_that_begins_late),
+		cmocka_unit_test(vertical_sync_at_the_first_line),
+		cmocka_unit_test(vertical_sync_that_is_uneven),
 		cmocka_unit_test(vertical_sync_that_begins_early),
 		cmocka_unit_test(vertical_sync_from_any_cell),
 		cmocka_unit_test(vertical_sync_that_is_never_asserted),

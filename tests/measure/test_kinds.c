@@ -113,6 +113,21 @@ static void a_stray_may_be_the_first_pulse(void **state)
 	erase(drawn);
 }
 
+// The same with two lines from the last pulse, at 90 of 100, to that at 30: the stray comes 12 cells after the first of them.
+static void a_line_over_the_end_behind_a_stray(void **state)
+{
+	(void)state;
+	struct drawn *drawn = DRAW("--ss--------------------------", "ss------------------", "ss------------------", "ss------------------",
+	                           "ss--------");
+	const struct raster raster = found_in(drawn);
+	assert_kinds(&raster, "SNNNN");
+	assert_int_equal(raster.line_count, 5);
+	for (uint32_t line = 0; line < 5; line++)
+		assert_int_equal(raster.lines[line].place, 400 * line);
+	assert_int_equal(raster.place_total, 2000);
+	erase(drawn);
+}
+
 // The period is the distance that takes the most time, not the one that comes most often: of 4 half lines and 3 whole ones, the whole.
 static void the_period_is_by_time(void **state)
 {
@@ -140,9 +155,9 @@ static void the_normal_width_is_by_number(void **state)
 	assert_kinds(&raster, "NN"); // of normal width 3, 2 would be narrow
 	erase(drawn);
 	// Where nothing narrower than a quarter of a line comes, wide pulses are normal.
-	drawn = DRAW("sssssss---------", "sssssss---------", "ssss------------");
+	drawn = DRAW("ssss------------", "sssssss---------", "sssssss---------");
 	raster = found_in(drawn);
-	assert_kinds(&raster, "NNS");
+	assert_kinds(&raster, "SNN");
 	erase(drawn);
 }
 
@@ -204,6 +219,21 @@ static void lines_without_a_pulse_of_their_own(void **state)
 	erase(drawn);
 }
 
+// A broad pulse in the middle changes nothing for its line, which is from 0H to 0H. And a line whose pulse comes a cell late begins with it.
+static void lines_in_a_vertical_interval(void **state)
+{
+	(void)state;
+	struct drawn *drawn = DRAW("ss------ssssss--", "ss--------------", "-ssssssssssssss-", "ss--------------", "ss--------------");
+	const struct raster raster = found_in(drawn);
+	assert_kinds(&raster, "NBNBNN");
+	assert_int_equal(raster.line_count, 5);
+	assert_line(&raster, 0, 0, 0, 160, true);
+	assert_line(&raster, 1, 320, 160, 330, true);
+	assert_line(&raster, 2, 640, 330, 480, false);
+	assert_line(&raster, 3, 960, 480, 640, true);
+	erase(drawn);
+}
+
 // A rest of a quarter of a line is none of its own, but one of more is; a line at half a line's distance is a line.
 static void rests_of_lines(void **state)
 {
@@ -261,11 +291,13 @@ int main(void)
 	const struct CMUnitTest tests[] = {
 		cmocka_unit_test(kinds_by_width_and_neighbours),
 		cmocka_unit_test(a_stray_may_be_the_first_pulse),
+		cmocka_unit_test(a_line_over_the_end_behind_a_stray),
 		cmocka_unit_test(the_period_is_by_time),
 		cmocka_unit_test(the_normal_width_is_by_number),
 		cmocka_unit_test(places_are_put_to_half_lines),
 		cmocka_unit_test(the_snap_is_a_sixteenth_of_a_line),
 		cmocka_unit_test(lines_without_a_pulse_of_their_own),
+		cmocka_unit_test(lines_in_a_vertical_interval),
 		cmocka_unit_test(rests_of_lines),
 		cmocka_unit_test(one_pulse_alone),
 		cmocka_unit_test(odd_numbers_of_half_lines),

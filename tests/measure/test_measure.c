@@ -338,13 +338,16 @@ static void picture_without_end(void **state)
 static void picture_over_the_end_of_a_line(void **state)
 {
 	(void)state;
-	struct drawn *drawn = DRAW(BROAD, PLAIN, "ss--------------", "ss--....------..", "nn............--", PLAIN);
-	const struct measurement *found = measure(drawn);
-	// Line 3 has picture from 40 to 80 and from 140 on: both are its own, together 40 to 160. Line 4 has it from 0 to 140.
-	assert_item(found, ITEM_PICTURE_START, "0", "40");
-	assert_item(found, ITEM_PICTURE_WIDTH, "120", "140");
-	assert_item(found, ITEM_FRONT_PORCH, "0", "20");
-	erase(drawn);
+	for (uint32_t cell = 0; cell < 96; cell++) {
+		struct drawn *drawn = DRAW(BROAD, PLAIN, "ss--------------", "ss--....------..", "nn............--", PLAIN);
+		rotate(drawn, cell);
+		const struct measurement *found = measure(drawn);
+		// Line 3 has picture from 40 to 80 and from 140 on: both are its own, together 40 to 160. Line 4 has it from 0 to 140.
+		assert_item(found, ITEM_PICTURE_START, "0", "40");
+		assert_item(found, ITEM_PICTURE_WIDTH, "120", "140");
+		assert_item(found, ITEM_FRONT_PORCH, "0", "20");
+		erase(drawn);
+	}
 }
 
 // A burst is that of the line in which it begins: from 150 of line 2 to 30 of line 3.
@@ -358,6 +361,19 @@ static void a_burst_over_the_end_of_a_line(void **state)
 	assert_item(found, ITEM_BURST_START, "150", "150");
 	assert_item(found, ITEM_BURST_LENGTH, "40", "40");
 	assert_item(found, ITEM_LINES_WITHOUT_BURST, "4", "4");
+	erase(drawn);
+}
+
+// A burst may begin at 0H.
+static void a_burst_with_sync(void **state)
+{
+	(void)state;
+	struct drawn *drawn = DRAW(BROAD, PLAIN, PLAIN, PLAIN);
+	drawn->asserted[32] |= 1u << DRAWN_BURST;
+	const struct measurement *found = measure(drawn);
+	assert_item(found, ITEM_BURST_START, "0", "0");
+	assert_item(found, ITEM_BREEZEWAY, "-20", "-20");
+	assert_item(found, ITEM_LINES_WITHOUT_BURST, "3", "3");
 	erase(drawn);
 }
 
@@ -386,6 +402,33 @@ static void a_picture_in_one_half_of_its_lines(void **state)
 	// but it is not the last.
 	assert_item(found, ITEM_PICTURE_TOP, "1", "1");
 	assert_item(found, ITEM_PICTURE_HEIGHT, "5", "5");
+	erase(drawn);
+}
+
+// The same with the first half alone; and where just half of the lines use a half, it is used.
+static void a_picture_in_the_first_half(void **state)
+{
+	(void)state;
+	struct drawn *drawn = DRAW(BROAD, PLAIN, "ss-bb-..--------", "ss-bb-..--------", "ss-bb-..--------", PLAIN);
+	const struct measurement *found = measure(drawn);
+	assert_item(found, ITEM_PICTURE_WIDTH, "20", "20");
+	assert_item(found, ITEM_PICTURE_HEIGHT, "3", "3");
+	assert_item(found, ITEM_VERTICAL_FRONT_PORCH, "1", "1");
+	erase(drawn);
+	drawn = DRAW(BROAD, PLAIN, "ss-bb-..........", "ss-bb-..........", "ss-bb-----......", "ss-bb-----......", PLAIN);
+	found = measure(drawn);
+	assert_item(found, ITEM_PICTURE_START, "60", "60");
+	erase(drawn);
+}
+
+// Blanking is measured from one line with picture to the next, if that is a normal one with picture.
+static void blanking_before_a_line_without_picture(void **state)
+{
+	(void)state;
+	struct drawn *drawn = DRAW(BROAD, PLAIN, PICTURE, BURST, PICTURE, BURST, PLAIN);
+	const struct measurement *found = measure(drawn);
+	assert_string_equal(found->items[ITEM_HORIZONTAL_BLANKING].why, "no normal line with picture follows another");
+	assert_item(found, ITEM_FRONT_PORCH, "20", "20");
 	erase(drawn);
 }
 
@@ -524,7 +567,10 @@ int main(void)
 		cmocka_unit_test(picture_without_end),
 		cmocka_unit_test(picture_over_the_end_of_a_line),
 		cmocka_unit_test(a_burst_over_the_end_of_a_line),
+		cmocka_unit_test(a_burst_with_sync),
 		cmocka_unit_test(two_bursts_in_a_line),
+		cmocka_unit_test(a_picture_in_the_first_half),
+		cmocka_unit_test(blanking_before_a_line_without_picture),
 		cmocka_unit_test(a_picture_in_one_half_of_its_lines),
 		cmocka_unit_test(a_picture_from_half_a_line_to_half_a_line),
 		cmocka_unit_test(polarity),

@@ -26,6 +26,9 @@
 	" { region: again, cells: 2, assert: [sync, blank] }, { region: more, cells: 8, assert: [blank] } ] }\n" \
 	"  close: { regions: [ { region: sync, cells: 2, assert: [sync, blank] }, { region: burst, cells: 2, assert: [blank, burst] }," \
 	" { region: rest, cells: 12, assert: [blank] } ] }\n" \
+	"  long: { regions: [ { region: sync, cells: 2, assert: [sync, blank] }, { region: rest, cells: 15, assert: [blank] } ] }\n" \
+	"  less: { regions: [ { region: sync, cells: 2, assert: [sync, blank] }, { region: rest, cells: 4, assert: [blank] }," \
+	" { region: picture, cells: 7 }, { region: front, cells: 3, assert: [blank] } ] }\n" \
 	"  picture:\n    regions:\n" \
 	"      - { region: sync, cells: 2, assert: [sync, blank] }\n" \
 	"      - { region: breezeway, cells: 1, assert: [blank] }\n" \
@@ -202,6 +205,27 @@ static void what_would_mend_a_miss(void **state)
 	}
 }
 
+// Where lines differ, it is the one that misses that is shown, and all of them move: lines of 160 and 170 us, front porches of 20 and 30 us.
+static void what_would_mend_one_line_of_several(void **state)
+{
+	(void)state;
+	static const char frame[] = "frame: [ { repeat: 1, line: broad }, { repeat: 1, line: plain }, { repeat: 2, line: less }, "
+	                            "{ repeat: 2, line: picture }, { repeat: 2, line: long }, { repeat: 1, line: plain } ]\n";
+	struct board *board = board_of("", SIGNALS, frame, "{ part: 28C64 }");
+	add_limit(board, ITEM_LINE_RATE, GRADE_MONITOR, "5 kHz to 6 kHz");
+	add_limit(board, ITEM_FRONT_PORCH, GRADE_MONITOR, "at least 25 us");
+	const struct limits_result *limits = judge(board);
+	const struct limit_verdict *rate = &limits->rows[ITEM_LINE_RATE].grades[GRADE_MONITOR];
+	const struct limit_verdict *porch = &limits->rows[ITEM_FRONT_PORCH].grades[GRADE_MONITOR];
+	assert_int_equal(rate->move_cells, 1);
+	assert_int_equal(rate->move_cell, 16);
+	assert_times(rate->moved, ITEM_LINE_RATE, "170", "180");
+	assert_int_equal(porch->move_cells, -1);
+	assert_int_equal(porch->move_cell, 64 + 14); // of the first line "picture"
+	assert_times(porch->moved, ITEM_FRONT_PORCH, "30", "40");
+	release(board);
+}
+
 // What is kept at one grade may be missed at the other; the plan's counts.
 static void the_grade_of_the_plan_counts(void **state)
 {
@@ -214,6 +238,7 @@ static void the_grade_of_the_plan_counts(void **state)
 		add_limit(board, ITEM_SYNC_WIDTH, GRADE_STUDIO, "22 us to 24 us");
 		add_limit(board, ITEM_SYNC_WIDTH, GRADE_MONITOR, "20 us to 24 us");
 		add_limit(board, ITEM_EQUALISING_WIDTH, GRADE_STUDIO, "at most 1 us"); // there are none
+		add_limit(board, ITEM_SERRATION_WIDTH, GRADE_STUDIO, "1 us");
 		const struct limits_result *limits = judge(board);
 		assert_int_equal(limits->kept[GRADE_STUDIO], 0);
 		assert_int_equal(limits->missed[GRADE_STUDIO], 1);
@@ -240,15 +265,17 @@ static void what_is_unknown_is_not_missed(void **state)
 	(void)state;
 	struct board *board = board_of("", SIGNALS, FRAME, "{ part: 28C64 }");
 	board->plan->grade = GRADE_MONITOR;
+	add_limit(board, ITEM_EQUALISING_WIDTH, GRADE_STUDIO, "1 us"); // for information: nothing is amiss without it
 	add_limit(board, ITEM_EQUALISING_WIDTH, GRADE_MONITOR, "at most 1 us");
 	// The margin needs more than 64 bits, but the verdict does not.
-	board->limits[1] = (struct limit){.item = ITEM_BROAD_WIDTH, .grade = GRADE_MONITOR, .has_low = true, .low = {1, INT64_MAX},
+	board->limits[2] = (struct limit){.item = ITEM_BROAD_WIDTH, .grade = GRADE_MONITOR, .has_low = true, .low = {1, INT64_MAX},
 	                                  .nominal = FRACTION_ZERO, .high = FRACTION_ZERO};
-	board->standard.limit_count = 2;
+	board->standard.limit_count = 3;
 	const struct limits_result *limits = judge(board);
 	assert_int_equal(limits->unknown[GRADE_MONITOR], 1);
 	assert_int_equal(limits->kept[GRADE_MONITOR], 1);
 	assert_int_equal(limits->missed[GRADE_MONITOR], 0);
+	assert_int_equal(limits->unknown[GRADE_STUDIO], 0);
 	assert_int_equal(board->proofs->proof[PROOF_LIMITS].verdict, VERDICT_PASS);
 	release(board);
 }
@@ -464,6 +491,7 @@ int main(void)
 {
 	const struct CMUnitTest tests[] = {
 		cmocka_unit_test(what_would_mend_a_miss),
+		cmocka_unit_test(what_would_mend_one_line_of_several),
 		cmocka_unit_test(the_grade_of_the_plan_counts),
 		cmocka_unit_test(what_is_unknown_is_not_missed),
 		cmocka_unit_test(widened_by_the_accuracy),
