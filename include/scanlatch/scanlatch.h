@@ -173,6 +173,23 @@ char *scanlatch_fit_json(const scanlatch_fit *fit);
 
 /* Layout 0 … count-1 as a complete plan, with its length in bytes. NULL when memory is out. */
 char *scanlatch_fit_plan(const scanlatch_fit *fit, size_t index, size_t *length);
+/* ---- Pictures: SVG documents, well-formed XML; what is too much to be drawn is left out, and the picture says so ---- */
+
+/* Of a set the plan that a bank shows is drawn; a plan alone has bank 0, and more if pins are wired for them. All return NULL after
+ * adding an error to messages: there is no such bank or line, or nothing to draw. */
+
+/* The signals of a line at their pins. `line` is the name of a line type, whose first line in the frame is drawn, or a line's number in
+ * the frame, from 0; NULL: the type that most lines have. */
+char *scanlatch_draw_line(const scanlatch_plan *plan, unsigned bank, const char *line, scanlatch_messages *messages);
+/* The same as text for a terminal of so many columns (fewer than 20 count as 20), in Unicode or ASCII. */
+char *scanlatch_draw_line_text(const scanlatch_plan *plan, unsigned bank, const char *line, unsigned columns, bool ascii,
+                               scanlatch_messages *messages);
+/* The whole frame. `interleaved`: the lines of two fields between each other; for interlaced frames only. */
+char *scanlatch_draw_frame(const scanlatch_plan *plan, unsigned bank, bool interleaved, scanlatch_messages *messages);
+/* The addresses of each stage and what their rows are for. Only for images that were made, not read; NULL without an error otherwise. */
+char *scanlatch_draw_table(const scanlatch_images *images, unsigned bank, scanlatch_messages *messages);
+/* The phase of the subcarrier at the start of each line. */
+char *scanlatch_draw_phase(const scanlatch_plan *plan, unsigned bank, scanlatch_messages *messages);
 
 /* ---- Catalogues ---- */
 

@@ -38,13 +38,15 @@ extern const size_t command_count;
 int command_build(int argument_count, char **arguments);
 int command_check(int argument_count, char **arguments);
 int command_fit(int argument_count, char **arguments);
+int command_draw(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
 int command_schema(int argument_count, char **arguments);
 int command_sheet(int argument_count, char **arguments);
 
 // Long options without a short one: values above any character.
-enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING };
+enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING,
+       OPTION_LINE, OPTION_BANK, OPTION_TEXT, OPTION_ASCII, OPTION_INTERLEAVE };
 
 // The options that every command has, for its table.
 #define COMMON_LONG_OPTIONS                                                                                                \
@@ -72,13 +74,6 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 // Prints the version to standard output. Returns EXIT_GOOD.
 int print_version(void);
 
-// Lets the signals that would end the program wait, so that no temporary file is left; *before is what to restore.
-void hold_ending_signals(sigset_t *before);
-
-// Writes a result as a file, whole or not at all; *kept says that the file held these bytes already and was left alone. A device or pipe is written
-// into. False after saying on standard error what was refused.
-bool write_result(const char *path, const char *bytes, size_t length, bool *kept);
-
 // "scanlatch COMMAND: …" and where to find help, on standard error. Returns EXIT_BAD.
 __attribute__((format(printf, 2, 3)))
 int usage_error(const char *command, const char *format, ...);
@@ -90,6 +85,16 @@ int print_messages(const scanlatch_messages *messages, enum colour_choice colour
 
 // Writes a string to standard output and frees it; "memory is out" if it is NULL. Returns EXIT_GOOD or EXIT_SYSTEM.
 int print_string(char *string);
+
+// Lets the signals that would end the program wait, so that no temporary file is left; *before is what to restore.
+void hold_ending_signals(sigset_t *before);
+
+// Writes a file, whole or not at all; *kept says that it held these bytes already and was left alone. A device or pipe is written into, not
+// replaced. False after saying on standard error what was refused.
+bool write_output(const char *path, const char *bytes, size_t length, bool *kept);
+
+// The same for a result, says so on standard output, and of a refusal why. Returns EXIT_GOOD or EXIT_SYSTEM.
+int write_result(const char *path, const char *result);
 
 // "scanlatch: memory is out" on standard error. Returns EXIT_SYSTEM.
 int memory_error(void);

@@ -85,7 +85,7 @@ static bool write_file(struct arena *arena, const char *path, const char *bytes,
 	return true;
 }
 
-bool write_result(const char *path, const char *bytes, size_t length, bool *kept)
+bool write_output(const char *path, const char *bytes, size_t length, bool *kept)
 {
 	struct arena *arena = arena_create();
 	sigset_t before;
@@ -100,4 +100,13 @@ bool write_result(const char *path, const char *bytes, size_t length, bool *kept
 	pthread_sigmask(SIG_SETMASK, &before, NULL);
 	arena_destroy(arena);
 	return good;
+}
+
+int write_result(const char *path, const char *result)
+{
+	bool kept;
+	if (!write_output(path, result, strlen(result), &kept))
+		return EXIT_SYSTEM;
+	printf("%-5s %s (%zu bytes)\n", kept ? "kept" : "wrote", path, strlen(result));
+	return EXIT_GOOD;
 }

@@ -132,7 +132,7 @@ static int write_page(const struct sheet_options *options, const struct sheet_jo
 		print_outcome(stderr, job);
 		return EXIT_GOOD;
 	}
-	if (!write_result(options->output, job->page, strlen(job->page), &kept))
+	if (!write_output(options->output, job->page, strlen(job->page), &kept))
 		return EXIT_SYSTEM;
 	if (options->common.json)
 		return print_json(options, job, kept);

@@ -171,8 +171,10 @@ bool measure_burstless(struct instrument *instrument, struct measurement *result
 	struct numbering numbering;
 	if (fields == NULL || list == NULL || !numbering_start(instrument, &numbering))
 		return false;
-	for (uint32_t index = 0; index < raster->field_count; index++)
+	for (uint32_t index = 0; index < raster->field_count; index++) {
 		fields[index].at_half = raster->fields[index].at_half;
+		fields[index].cell = raster->fields[index].cell;
+	}
 	bool joins = false;
 	for (uint32_t index = 0; raster->field_count > 0 && index < raster->line_count; index++) {
 		const int64_t place = raster->lines[index].place;

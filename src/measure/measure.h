@@ -25,6 +25,7 @@ struct burstless {
 };
 
 struct measured_field {
+	uint32_t cell;                 // of the frame, that begins at 0V
 	bool at_half;                  // 0V is half way through a line
 	int64_t burstless_lines;
 };

@@ -20,7 +20,7 @@ enum shape_kind {
 	SHAPE_QUANTITY,  // of one of `dimensions`
 	SHAPE_BIT_COUNT, // `least` to `most` bits
 	SHAPE_LIST,      // `least` to `most` values of the shape `item`
-	SHAPE_MAPPING,   // of `keys`
+	SHAPE_MAPPING,   // of `keys`, at least `least` of them
 	SHAPE_NAMED,     // `least` to `most` values of the shape `item`, each under a name of the shape `name`
 	SHAPE_LIMITS,    // limits under the names of what is measured
 	SHAPE_EITHER,    // one of `shapes`, of which no value has two

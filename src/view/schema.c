@@ -100,6 +100,7 @@ static json_t *mapping_schema(struct writer *writer, const struct shape *shape)
 	else
 		json_decref(required);
 	json_put(&object, "additionalProperties", json_false());
+	put_count(&object, "minProperties", shape->least, 0);
 	if (shape->group.count > 1)
 		json_put(&object, "oneOf", group_schema(shape));
 	if (shape->bond.key != NULL)

@@ -70,7 +70,8 @@ holds "a set looks as the README shows" compare 9
 holds "fit finds what the README shows" compare 10
 holds "fit writes as the README shows" compare 11
 holds "the plan that fit wrote proves" eval "scanlatch build board.yaml -o board"
-same "the README shows eleven commands" "$(block 12)" ""
+holds "a drawing looks as the README shows" compare 12
+same "the README shows twelve commands" "$(block 13)" ""
 
 # A block of YAML that is a plan's or a set's own text: each of its lines stands there, but for what a comment says.
 yaml_block() { awk -v wanted="$1" '/^```/ { if (inside) inside = 0; else if ($0 == "```yaml") inside = ++count == wanted; next } inside' "$readme"; }

@@ -34,8 +34,7 @@ bank-plan-other: bank-plan # the same
 doubled-name-bank: doubled-name # 0 and 0x0 are different keys
 doubled-name-change: doubled-name # changes cannot be compared by name
 doubled-name-label: doubled-name # nor chips by label
-missing-key-limits: missing-key # either of two keys, unless one is empty: left to the reader
-missing-key-standard: missing-key # the same
+missing-key-limits: missing-key # limits may be empty beside a base
 CASES
 }
 

@@ -36,6 +36,7 @@ WHY_UNSEEN = [
     ("bank-plan", "", "the plans of a set are other files"),
     ("doubled-name", r"label", "labels are compared with those of other chips"),
     ("doubled-name", r"region .* is changed twice", "regions are compared with those of other changes"),
+    ("missing-key", r"a standard of one's own needs limits", "limits may be empty beside a base"),
     ("too-many", r"regions: wanted at most", "regions are counted over all line types"),
 ]
 SCALARS = ["7", "0", "-1", "1.5", "0x10", "+7", "1e3", "2.0", "true", "false", "True", "~", "", "x", "auto", "free", "9 dots",

@@ -4,6 +4,7 @@
 #include "naive_stages.h"
 
 #define SPOILT 10u // sets of images for each plan
+#define LARGEST_PICTURE 4000000u
 #define PROVED_CELLS 300000u
 #define PROVED_STATE_BITS 20u
 
@@ -209,6 +210,55 @@ static void judge_images(const scanlatch_images *made, uint64_t random, bool col
 		spoil_and_prove(made, &random, messages);
 }
 
+// Elements of a picture are nested: each end tag ends one that is open, and at its end none is.
+static void require_picture(char *picture)
+{
+	long depth = 0;
+	FUZZ_REQUIRE(picture != NULL && strlen(picture) < LARGEST_PICTURE);
+	for (const char *at = strchr(picture, '<'); at != NULL; at = strchr(at + 1, '<')) {
+		const char *end = strchr(at, '>');
+		FUZZ_REQUIRE(end != NULL);
+		if (at[1] == '/')
+			depth--;
+		else if (at[1] != '?' && end[-1] != '/')
+			depth++;
+		FUZZ_REQUIRE(depth >= 0);
+	}
+	FUZZ_REQUIRE(depth == 0 && strcmp(picture + strlen(picture) - 7, "</svg>\n") == 0);
+	scanlatch_free(picture);
+}
+
+// A picture, or an error more than before: not all plans have what is to be drawn.
+static void require_picture_or_error(char *picture, const scanlatch_messages *messages, size_t errors)
+{
+	if (picture != NULL)
+		require_picture(picture);
+	else
+		FUZZ_REQUIRE(scanlatch_messages_errors(messages) == errors + 1 && !scanlatch_messages_system(messages));
+}
+
+// What is drawn of a plan that compiles.
+static void judge_pictures(const scanlatch_plan *plan, const scanlatch_images *made, uint64_t random)
+{
+	scanlatch_messages *messages = fuzz_need(scanlatch_messages_create());
+	char line[24];
+	snprintf(line, sizeof line, "%u", (unsigned)(random % plan->members[0].timeline->line_count));
+	require_picture(scanlatch_draw_line(plan, 0, NULL, messages));
+	require_picture(scanlatch_draw_frame(plan, 0, false, messages));
+	require_picture(scanlatch_draw_table(made, 0, messages));
+	require_text(scanlatch_draw_line_text(plan, 0, NULL, (unsigned)(random % 300), random % 2 == 0, messages));
+	FUZZ_REQUIRE(scanlatch_messages_count(messages) == 0);
+	char *interleaved = scanlatch_draw_frame(plan, 0, true, messages);
+	require_picture_or_error(interleaved, messages, 0);
+	size_t errors = scanlatch_messages_errors(messages);
+	char *phase = scanlatch_draw_phase(plan, 0, messages);
+	require_picture_or_error(phase, messages, errors);
+	errors = scanlatch_messages_errors(messages);
+	char *numbered = scanlatch_draw_line(plan, 0, line, messages); // it may be the name of a type that no line has
+	require_picture_or_error(numbered, messages, errors);
+	scanlatch_messages_destroy(messages);
+}
+
 // True if it compiles.
 static bool judge_plan(const scanlatch_plan *plan, uint64_t random, scanlatch_messages *messages)
 {
@@ -222,6 +272,7 @@ static bool judge_plan(const scanlatch_plan *plan, uint64_t random, scanlatch_me
 	}
 	FUZZ_REQUIRE(scanlatch_messages_errors(messages) == 0);
 	judge_images(made, random, kept, messages);
+	judge_pictures(plan, made, random);
 	scanlatch_images_destroy(made);
 	return true;
 }
