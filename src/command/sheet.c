@@ -85,7 +85,7 @@ static int make_page(struct sheet_job *job, const char *path, bool strict, struc
 		return EXIT_SYSTEM;
 	job->failed = scanlatch_proofs_failed(job->proofs, strict);
 	job->missed = scanlatch_proofs_missed(job->proofs);
-	job->page = scanlatch_sheet(job->proofs, strict);
+	job->page = scanlatch_sheet(job->proofs, job->made, strict);
 	return job->page != NULL && job->missed != NULL ? EXIT_GOOD : EXIT_SYSTEM;
 }
 

@@ -8,6 +8,7 @@
 #include "scanlatch/scanlatch.h"
 #include "view/page.h"
 #include "view/page_data.h"
+#include "view/palette.h"
 #include "view/sheet_parts.h"
 
 #define MARK_BYTES 16
@@ -23,16 +24,17 @@ static const struct section common_sections[] = {
 };
 static const struct section bank_sections[] = {
 	{"proofs", "Proofs"}, {"bring-up", "Bring-up"}, {"divider", "Divider"}, {"lines", "Lines and frame"}, {"limits", "Limits"},
+	{"pictures", "Pictures"},
 };
 static const struct section last_sections[] = {{"cautions", "Cautions"}, {"glossary", "Words"}};
 
 enum { COMMON_JOB, COMMON_BURN, COMMON_WIRING, COMMON_LOGIC };
-enum { BANK_PROOFS, BANK_BRING_UP, BANK_DIVIDER, BANK_LINES, BANK_LIMITS, BANK_SECTIONS };
+enum { BANK_PROOFS, BANK_BRING_UP, BANK_DIVIDER, BANK_LINES, BANK_LIMITS, BANK_PICTURES, BANK_SECTIONS };
 enum { LAST_CAUTIONS, LAST_GLOSSARY };
 
 static void begin_section(struct text *out, const struct section *section, const char *mark)
 {
-	text_printf(out, "<section id=\"%s%s\">\n", section->id, mark);
+	text_printf(out, "<section id=\"%s%s\" class=\"about-%s\">\n", section->id, mark, section->id);
 	page_element(out, "h2", "", "%s", section->heading);
 }
 
@@ -45,6 +47,7 @@ static void put_style(struct text *out)
 {
 	text_put(out, "<style>/*<![CDATA[*/\n");
 	text_put_bytes(out, (const char *)page_sheet_css, page_sheet_css_length);
+	palette_put_style(out);
 	text_put(out, "/*]]>*/</style>\n");
 }
 
@@ -150,7 +153,7 @@ static void put_common(struct text *out, const struct sheet *sheet)
 	end_section(out);
 }
 
-static void put_bank_section(struct text *out, const struct sheet *sheet, size_t member, unsigned section)
+static void put_bank_section(struct text *out, const struct sheet *sheet, size_t member, unsigned section, const char *mark)
 {
 	const struct proofs *proofs = sheet->view->proofs[member];
 	switch (section) {
@@ -159,6 +162,7 @@ static void put_bank_section(struct text *out, const struct sheet *sheet, size_t
 	case BANK_DIVIDER: sheet_divider(out, &proofs->timeline->plan->clock); break;
 	case BANK_LINES: sheet_lines(out, proofs->timeline); break;
 	case BANK_LIMITS: sheet_limits(out, proofs); break;
+	case BANK_PICTURES: sheet_pictures(out, sheet, member, mark); break;
 	}
 }
 
@@ -184,7 +188,7 @@ static void put_bank(struct text *out, const struct sheet *sheet, size_t member)
 		put_bank_heading(out, sheet, member);
 	for (unsigned section = 0; section < BANK_SECTIONS; section++) {
 		begin_section(out, &bank_sections[section], mark);
-		put_bank_section(out, sheet, member, section);
+		put_bank_section(out, sheet, member, section, mark);
 		end_section(out);
 	}
 }

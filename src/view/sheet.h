@@ -4,6 +4,7 @@
 #define SCANLATCH_VIEW_SHEET_H
 
 #include "proof/tally.h"
+#include "table/table.h"
 #include "view/set.h"
 
 struct text;
@@ -12,6 +13,7 @@ struct sheet {
 	const struct set_view *view;
 	const struct image *images;          // one for each chip
 	const struct tally *const *tallies;  // [view->count]; NULL where the machine does not keep to the frame
+	const struct table *const *tables;   // [view->count]: the maker's; NULL where images were read
 	bool strict;                         // advice that fails counts like a must
 };
 

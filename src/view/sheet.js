@@ -27,6 +27,32 @@
 		title.remove();
 	});
 
+	// A box for each trace of a picture, to put it away and to show it again.
+	document.querySelectorAll("figure.picture").forEach(function (figure) {
+		var traces = figure.querySelectorAll("g.trace[data-trace]");
+		if (traces.length === 0) {
+			return;
+		}
+		var controls = document.createElement("fieldset");
+		var legend = document.createElement("legend");
+		controls.className = "controls";
+		legend.textContent = "Show";
+		controls.appendChild(legend);
+		traces.forEach(function (trace) {
+			var label = document.createElement("label");
+			var box = document.createElement("input");
+			box.type = "checkbox";
+			box.checked = true;
+			box.addEventListener("change", function () {
+				trace.classList.toggle("away", !box.checked);
+			});
+			label.appendChild(box);
+			label.appendChild(document.createTextNode(" " + trace.getAttribute("data-trace")));
+			controls.appendChild(label);
+		});
+		figure.insertBefore(controls, figure.firstChild);
+	});
+
 	function show(event) {
 		var element = event.target.closest ? event.target.closest("[data-exact]") : null;
 		readout.hidden = element === null;

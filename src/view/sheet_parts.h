@@ -39,6 +39,9 @@ void sheet_lines(struct text *out, const struct timeline *timeline);
 void sheet_limits(struct text *out, const struct proofs *proofs);
 void sheet_bring_up(struct text *out, const struct proofs *proofs, const struct tally *tally);
 
+// `mark` is what follows the names of a bank's sections and pictures.
+void sheet_pictures(struct text *out, const struct sheet *sheet, size_t member, const char *mark);
+
 void sheet_cautions(struct text *out);
 // The terms that the page has used; `page` is what was put so far.
 void sheet_glossary(struct text *out, const char *page);

@@ -49,6 +49,7 @@ static const struct term terms[] = {
 	{"grade", "grade", "which tolerance of a limit counts: studio, as published, or monitor, as receivers usually accept"},
 	{"H, V", "H 0x", "the state of the line stage and that of the frame stage"},
 	{"hold", "held", "state bits that a plan fixes in some cells, such as a video address"},
+	{"IRE", "IRE", "a hundredth of the level from blanking to white; 140 of them are 1 volt with sync"},
 	{"jumper", "jumper", "a wire or switch that ties a pin high or low"},
 	{"kind", "kind", "the number of a line's type, by which the frame stage tells the line stage what to do"},
 	{"latch", "latch", "a register that takes its inputs D to its outputs Q at a clock edge"},

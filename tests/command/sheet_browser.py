@@ -162,7 +162,7 @@ def check_sides(page, pdf, name):
 	text = subprocess.run(["pdftotext", "-bbox", pdf, "-"], check=True, capture_output=True).stdout.decode()
 	for sheet in ElementTree.fromstring(re.sub(r"<!DOCTYPE[^>]*>", "", text)).iter(XHTML + "page"):
 		width = float(sheet.get("width"))
-		if abs(width - PAPERS[name][0] * 72) > 1:
+		if min(abs(width - side * 72) for side in PAPERS[name]) > 1: # pictures lie across
 			fault(page, f"{name}: a page is {width} points wide")
 		for word in sheet.iter(XHTML + "word"):
 			if float(word.get("xMin")) < 20 or float(word.get("xMax")) > width - 20:
@@ -196,10 +196,11 @@ def prints(pages):
 
 
 def readout_over(browser, selector, index):
-	"""What the page tells while the pointer is over an element."""
-	box = browser.value(f"""(() => {{ const element = document.querySelectorAll({json.dumps(selector)})[{index}];
+	"""What the page tells while the pointer is over an element: so many of a selector, or without that an expression."""
+	element = f"document.querySelectorAll({json.dumps(selector)})[{index}]" if selector else index
+	box = browser.value(f"""(() => {{ const element = {element};
 		element.scrollIntoView({{block: "center"}}); const box = element.getBoundingClientRect();
-		return [box.left + Math.min(box.width, 60) / 2, box.top + box.height / 2]; }})()""")
+		return [box.left + Math.min(box.width, 60) / 2, box.top + Math.min(box.height, 60) / 2]; }})()""")
 	browser.hover(1, 1)
 	browser.hover(*box)
 	return browser.value("(() => { const readout = document.getElementById('readout'); return readout.hidden ? '' : readout.textContent; })()")
@@ -216,6 +217,52 @@ def check_regions(browser, report):
 			elif found[7] is not None and found[7] != region["asked_ticks"]:
 				fault("asked:", told, region)
 			index += 1
+
+
+def check_pictures(browser, report):
+	"""What pictures of lines tell of regions and levels, of each type that was drawn, is what the report has."""
+	for line in report["lines"]:
+		title = f'"{line["name"]}"'
+		figure = browser.value(f"""Array.from(document.querySelectorAll("figure.of-line")).findIndex(figure =>
+			figure.querySelector("svg > title").textContent.includes({json.dumps(title)}))""")
+		if figure < 0:
+			if line["used"] > 0:
+				fault("no picture of", title)
+			continue
+		inside = f"document.querySelectorAll('figure.of-line')[{figure}].querySelectorAll"
+		regions = browser.value(f"Array.from({inside}('.region')).map(box => ['region', 'tick', 'ticks', 'us'].map(key => box.dataset[key]))")
+		wanted = [[region["name"], region["start_ticks"], region["ticks"]] for region in line["regions"]]
+		if [region[:3] for region in regions] != wanted:
+			fault("regions of", title, regions, wanted)
+		if any(abs(float(shown[3]) - region["us"]) > 1e-6 for shown, region in zip(regions, line["regions"])):
+			fault("microseconds of", title, regions)
+		check_runs(browser, inside, title, line)
+
+
+def check_runs(browser, inside, title, line):
+	"""A pointer over each run of each trace, and the runs are the whole line."""
+	traces = browser.value(f"Array.from({inside}('g.trace')).map(trace => [trace.dataset.trace, trace.querySelectorAll('.run').length])")
+	for trace, (name, runs) in enumerate(traces):
+		cells = ticks = 0
+		for run in range(runs):
+			told = readout_over(browser, "", f"{inside}('g.trace')[{trace}].querySelectorAll('.run')[{run}]")
+			found = re.match(r"(\S+) (high|low), (not )?asserted: cells? (\d+)(?: to \d+)?; (\d+) cells?, (\d+) ticks?, (\S+) us", told)
+			if found is None or found[1] != name or int(found[4]) != cells:
+				fault("run:", title, name, run, told)
+				continue
+			cells, ticks = cells + int(found[5]), ticks + int(found[6])
+		if (cells, ticks) != (line["cells"], int(line["ticks"])):
+			fault("runs of", title, name, "are", cells, "cells,", ticks, "ticks")
+
+
+def check_boxes(browser):
+	"""The boxes above a picture put traces away and show them again."""
+	state = """(() => { const figure = document.querySelector("figure.of-line"), box = figure.querySelector("input");
+		%s return [figure.querySelectorAll("input").length === figure.querySelectorAll("g.trace").length,
+		getComputedStyle(figure.querySelector("g.trace")).display !== "none"]; })()"""
+	found = [browser.value(state % act) for act in ("", "box.click();", "box.click();")]
+	if found != [[True, True], [True, False], [True, True]]:
+		fault("boxes of traces:", found)
 
 
 def check_limits(browser, report):
@@ -242,7 +289,10 @@ def tells(page, check, proofs):
 		if readout_over(browser, "h1", 0) != "":
 			fault("the heading tells something")
 		with open(check, encoding="utf-8") as file:
-			check_regions(browser, json.load(file))
+			report = json.load(file)
+		check_regions(browser, report)
+		check_pictures(browser, report)
+		check_boxes(browser)
 		with open(proofs, encoding="utf-8") as file:
 			check_limits(browser, json.load(file)["proofs"])
 	finally:
