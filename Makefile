@@ -41,14 +41,17 @@ LIBRARY = $(BUILD)/libscanlatch.a
 CATALOGUE_DATA = $(BUILD)/generated/catalogue_data.c
 REPORT_DATA = $(BUILD)/generated/report_data.c
 
+PAGE_DATA = $(BUILD)/generated/page_data.c
+
 CATALOGUES = $(wildcard src/catalogue/*.yaml)
+PAGE_FILES = src/view/sheet.css src/view/sheet.js
 REPORTS = $(sort $(wildcard src/view/reports/*.json src/view/reports/shared/*.json))
 SOURCES = $(wildcard src/*/*.c src/*.c)
 PROGRAM_SOURCES = $(filter src/command/%,$(SOURCES))
 LIBRARY_SOURCES = $(filter-out src/command/%,$(SOURCES))
 PROGRAM_OBJECTS = $(PROGRAM_SOURCES:src/%.c=$(BUILD)/obj/%.o)
 LIBRARY_OBJECTS = $(LIBRARY_SOURCES:src/%.c=$(BUILD)/obj/%.o) $(BUILD)/obj/generated/catalogue_data.o \
-	$(BUILD)/obj/generated/report_data.o
+	$(BUILD)/obj/generated/page_data.o $(BUILD)/obj/generated/report_data.o
 
 TEST_PROGRAMS = $(patsubst tests/%.c,$(BUILD)/tests/%,$(wildcard tests/$(FOLDER)/test_*.c))
 TEST_SCRIPTS = $(wildcard tests/$(FOLDER)/*.sh)
@@ -101,18 +104,26 @@ $(BUILD)/obj/generated/%.o: $(BUILD)/generated/%.c $(BUILD)/flags | $(PACKAGES)
 	$(call say,CC  ,$<)
 	$(QUIET)$(CC) $(FLAGS) -MMD -MP -c -o $@ $<
 
-# Each catalogue as an array of its bytes, a NUL after them, and its length without the NUL.
-$(CATALOGUE_DATA): $(CATALOGUES)
+# Each file as an array of its bytes, a NUL after them, and its length without the NUL. $(1): what names begin with, $(2): their header,
+# $(3): the files.
+define as_arrays
 	@mkdir -p $(@D)
 	$(call say,DATA,$@)
-	$(QUIET){ echo '#include "catalogue/data.h"'; \
-	for file in $(CATALOGUES); do \
-		name=$$(basename "$$file" .yaml | tr - _); \
-		echo "const unsigned char catalogue_$$name[] = {"; \
+	$(QUIET){ echo '#include "$(2)"'; \
+	for file in $(3); do \
+		name=$$(basename "$$file" .yaml | tr .- __); \
+		echo "const unsigned char $(1)_$$name[] = {"; \
 		od -An -v -tx1 "$$file" | sed 's/ *\([0-9a-f][0-9a-f]\)/0x\1,/g'; \
 		echo "0x00};"; \
-		echo "const size_t catalogue_$${name}_length = sizeof catalogue_$$name - 1;"; \
+		echo "const size_t $(1)_$${name}_length = sizeof $(1)_$$name - 1;"; \
 	done; } > $@
+endef
+
+$(CATALOGUE_DATA): $(CATALOGUES)
+	$(call as_arrays,catalogue,catalogue/data.h,$^)
+
+$(PAGE_DATA): $(PAGE_FILES)
+	$(call as_arrays,page,view/page_data.h,$^)
 
 # The schema of each report, and the definitions that they share: a table of names and texts, then an entry without a name.
 $(REPORT_DATA): $(REPORTS) $(BUILD)/reports

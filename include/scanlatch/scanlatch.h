@@ -143,6 +143,11 @@ char *scanlatch_proofs_json(const scanlatch_proofs *proofs);
 enum { SCANLATCH_FILE_BIN = 1, SCANLATCH_FILE_HEX = 2 };
 char *scanlatch_manifest(const scanlatch_proofs *proofs, unsigned files);
 
+/* The build sheet, a page of HTML that is XML too and loads nothing: verdicts, files to burn, wiring, bring-up, limits. If a must failed, or with
+ * strict any advice, it says so first and is not approved. `made`: images of the same plan that were made, with those bytes, whose addresses
+ * are drawn too; NULL if there are none. NULL when memory is out. */
+char *scanlatch_sheet(const scanlatch_proofs *proofs, const scanlatch_images *made, bool strict);
+
 /* ---- Fit: layouts of lines that suit a standard ---- */
 
 /* What is asked. Texts stay the caller's and are not needed once the search is done. */

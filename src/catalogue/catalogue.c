@@ -9,7 +9,7 @@
 #define LIMIT_GRADES 32    // of a part
 
 enum { SECTION_MEMORIES, SECTION_LATCHES, SECTION_COUNTERS, SECTION_DECODERS, SECTION_COUNT };
-enum { PART_ADDRESS_PINS, PART_DATA_PINS, PART_PACKAGE, PART_SOURCE, PART_ACCESS, PART_KEY_COUNT };
+enum { PART_ADDRESS_PINS, PART_DATA_PINS, PART_PACKAGE, PART_SOURCE, PART_ACCESS, PART_PINOUT, PART_KEY_COUNT };
 enum { LOGIC_CONDITIONS, LOGIC_DELAY, LOGIC_SETUP, LOGIC_KEY_COUNT };
 enum { TIME_TIME, TIME_SOURCE, TIME_KEY_COUNT };
 
@@ -25,6 +25,7 @@ static const struct key part_keys[PART_KEY_COUNT] = {
 	[PART_PACKAGE] = PLAIN_KEY("package", KEY_REQUIRED),
 	[PART_SOURCE] = PLAIN_KEY("source", KEY_REQUIRED),
 	[PART_ACCESS] = PLAIN_KEY("access", KEY_REQUIRED),
+	[PART_PINOUT] = PLAIN_KEY("pinout", KEY_OPTIONAL),
 };
 // A decoder has all but the last.
 static const struct key logic_keys[LOGIC_KEY_COUNT] = {
@@ -115,6 +116,8 @@ static void read_part(struct reader *reader, const struct node_pair *pair, struc
 	catalogue_text(reader, values[PART_PACKAGE], "package", &part->package);
 	catalogue_text(reader, values[PART_SOURCE], "source", &part->source);
 	read_grades(reader, values[PART_ACCESS], part);
+	if (values[PART_PINOUT] != NULL)
+		read_pinout(reader, values[PART_PINOUT], part);
 }
 
 static bool check_section(struct reader *reader, const struct node *node, size_t section)

@@ -15,6 +15,23 @@ struct access_grade {
 	const char *source;
 };
 
+enum pin_kind {
+	PIN_ADDRESS,
+	PIN_DATA,
+	PIN_GROUND,
+	PIN_SUPPLY,
+	PIN_TIED_LOW,   // a control input that is low while the chip is read all the time
+	PIN_TIED_HIGH,  // one that is high then: no writing, no programming
+	PIN_OPEN        // not connected inside, or an output that nobody needs
+};
+
+// A pin of a package.
+struct package_pin {
+	const char *name;        // "A3", "D0", "/CE"
+	enum pin_kind kind;
+	unsigned index;          // of an address or data pin
+};
+
 // A parallel memory.
 struct part {
 	const char *name;
@@ -24,6 +41,9 @@ struct part {
 	const struct access_grade *grades; // fastest first
 	size_t grade_count;
 	const char *source;      // of organisation and package
+	const struct package_pin *pins; // [pin_count], from pin 1 on; NULL if they are not known
+	unsigned pin_count;
+	const char *pinout_source;
 };
 
 enum logic_kind { LOGIC_LATCH, LOGIC_COUNTER, LOGIC_DECODER };
@@ -57,6 +77,9 @@ const struct catalogue *catalogue_load(struct arena *arena, struct diagnostics *
 // The part of a name (exact), or NULL. Cannot fail.
 const struct part *catalogue_part(const struct catalogue *catalogue, const char *name);
 const struct logic_part *catalogue_logic(const struct catalogue *catalogue, const char *name);
+
+// The number of the package's pin that is address pin or data pin `index`; 0 if the part's pins are not known. Cannot fail.
+unsigned part_pin_number(const struct part *part, enum pin_kind kind, unsigned index);
 
 // Bytes of a part's whole capacity. Cannot fail.
 size_t part_bytes(const struct part *part);

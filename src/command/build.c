@@ -1,6 +1,5 @@
 #include <getopt.h>
 #include <jansson.h>
-#include <signal.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>

@@ -44,6 +44,7 @@ int command_diff(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
 int command_schema(int argument_count, char **arguments);
+int command_sheet(int argument_count, char **arguments);
 
 // Long options without a short one: values above any character.
 enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING,
@@ -90,7 +91,11 @@ int print_string(char *string);
 // Lets the signals that would end the program wait, so that no temporary file is left; *before is what to restore.
 void hold_ending_signals(sigset_t *before);
 
-// Writes a result as a file, whole or not at all, says so on standard output, and of a refusal why. Returns EXIT_GOOD or EXIT_SYSTEM.
+// Writes a file, whole or not at all; *kept says that it held these bytes already and was left alone. A device or pipe is written into, not
+// replaced. False after saying on standard error what was refused.
+bool write_output(const char *path, const char *bytes, size_t length, bool *kept);
+
+// The same for a result, says so on standard output, and of a refusal why. Returns EXIT_GOOD or EXIT_SYSTEM.
 int write_result(const char *path, const char *result);
 
 // "scanlatch: memory is out" on standard error. Returns EXIT_SYSTEM.

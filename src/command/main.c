@@ -11,6 +11,7 @@ const struct command commands[] = {
 	{"prove", "prove images that are there against their plan or set", command_prove},
 	{"diff", "what changed between two plans, sets, or a plan and images", command_diff},
 	{"draw", "draw a line, the frame, the tables or the colour phase of a plan", command_draw},
+	{"sheet", "write the build sheet of a plan or set, a page to print and keep at the bench", command_sheet},
 	{"fit", "search line layouts that suit a standard, and write one as a plan", command_fit},
 	{"lift", "read a plan back out of images", command_lift},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
@@ -19,7 +20,7 @@ const struct command commands[] = {
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
-static const char *const later_commands[] = {"sheet", "readback", "probe", "export"};
+static const char *const later_commands[] = {"readback", "probe", "export"};
 
 static void print_help(FILE *out)
 {

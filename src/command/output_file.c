@@ -1,7 +1,10 @@
 #include <errno.h>
+#include <fcntl.h>
 #include <signal.h>
 #include <stdio.h>
 #include <string.h>
+#include <sys/stat.h>
+#include <unistd.h>
 
 #include "base/arena.h"
 #include "base/file.h"
@@ -26,25 +29,84 @@ static const char *folder_of(struct arena *arena, const char *path)
 	return arena_copy(arena, path, slash == path ? 1 : (size_t)(slash - path));
 }
 
-int write_result(const char *path, const char *result)
+static void report_failure(const struct write_failure *failure, const char *after)
+{
+	fprintf(stderr, "scanlatch: cannot %s %s: %s%s\n", failure->step, failure->path, strerror(failure->error), after);
+}
+
+static bool write_bytes(int descriptor, const char *bytes, size_t length)
+{
+	while (length > 0) {
+		const ssize_t written = write(descriptor, bytes, length);
+		if (written < 0 && errno != EINTR)
+			return false;
+		bytes += written > 0 ? written : 0;
+		length -= written > 0 ? (size_t)written : 0;
+	}
+	return true;
+}
+
+// A device or a pipe must not be replaced by a file: its bytes go into it.
+static bool is_stream(const char *path)
+{
+	struct stat status;
+	return stat(path, &status) == 0 && !S_ISREG(status.st_mode) && !S_ISDIR(status.st_mode);
+}
+
+static bool write_stream(const char *path, const char *bytes, size_t length)
+{
+	struct write_failure failure = {.step = "write", .path = path};
+	const int descriptor = open(path, O_WRONLY | O_CLOEXEC);
+	bool good = descriptor >= 0 && write_bytes(descriptor, bytes, length);
+	failure.error = errno;
+	if (descriptor >= 0 && close(descriptor) != 0 && good) {
+		failure.error = errno;
+		good = false;
+	}
+	if (!good)
+		report_failure(&failure, "");
+	return good;
+}
+
+static bool write_file(struct arena *arena, const char *path, const char *bytes, size_t length, bool *kept)
+{
+	const char *folder = folder_of(arena, path), *slash = strrchr(path, '/');
+	struct output_file file = {slash != NULL ? slash + 1 : path, bytes, length, false};
+	struct write_failure failure;
+	if (folder == NULL) {
+		memory_error();
+		return false;
+	}
+	if (!file_write_all(arena, folder, &file, 1, &failure)) {
+		report_failure(&failure, "; nothing was written");
+		return false;
+	}
+	*kept = file.kept;
+	return true;
+}
+
+bool write_output(const char *path, const char *bytes, size_t length, bool *kept)
 {
 	struct arena *arena = arena_create();
-	const char *folder = arena != NULL ? folder_of(arena, path) : NULL;
-	const char *slash = strrchr(path, '/');
-	struct output_file file = {slash != NULL ? slash + 1 : path, result, strlen(result), false};
-	struct write_failure failure;
 	sigset_t before;
-	int code = EXIT_GOOD;
-	hold_ending_signals(&before);
-	if (folder == NULL) {
-		code = memory_error();
-	} else if (file_write_all(arena, folder, &file, 1, &failure)) {
-		printf("%-5s %s (%zu bytes)\n", file.kept ? "kept" : "wrote", path, file.length);
-	} else {
-		fprintf(stderr, "scanlatch: cannot %s %s: %s; nothing was written\n", failure.step, failure.path, strerror(failure.error));
-		code = EXIT_SYSTEM;
+	bool good = false;
+	*kept = false;
+	if (arena == NULL) {
+		memory_error();
+		return false;
 	}
+	hold_ending_signals(&before);
+	good = is_stream(path) ? write_stream(path, bytes, length) : write_file(arena, path, bytes, length, kept);
 	pthread_sigmask(SIG_SETMASK, &before, NULL);
 	arena_destroy(arena);
-	return code;
+	return good;
+}
+
+int write_result(const char *path, const char *result)
+{
+	bool kept;
+	if (!write_output(path, result, strlen(result), &kept))
+		return EXIT_SYSTEM;
+	printf("%-5s %s (%zu bytes)\n", kept ? "kept" : "wrote", path, strlen(result));
+	return EXIT_GOOD;
 }

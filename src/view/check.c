@@ -16,13 +16,6 @@
 #include "view/placement.h"
 #include "view/proofs.h"
 
-// A line type on its way to a table.
-struct line_view {
-	const struct timeline *timeline;
-	const struct line_type *type;
-	const struct laid_line *laid;
-};
-
 enum { COLUMN_REGION, COLUMN_CELL, COLUMN_CELLS, COLUMN_TICKS, COLUMN_START, COLUMN_LENGTH, COLUMN_ASKED, COLUMN_ROUNDED, COLUMN_ASSERTED };
 
 static const struct column region_columns[] = {
@@ -106,8 +99,7 @@ static void put_region_cell(struct text *out, const void *context, size_t row, s
 	}
 }
 
-// How many lines of the frame have each type. NULL when memory is out.
-static uint32_t *count_uses(const struct timeline *timeline, struct arena *arena)
+uint32_t *count_uses(const struct timeline *timeline, struct arena *arena)
 {
 	uint32_t *uses = arena_array(arena, timeline->plan->line_count, sizeof *uses);
 	for (uint32_t line = 0; uses != NULL && line < timeline->line_count; line++)
@@ -126,28 +118,44 @@ static void put_cycles(struct text *out, const struct clock *clock, int64_t tick
 	text_put(out, " cycles");
 }
 
-static void put_line(struct text *out, const struct timeline *timeline, size_t type, uint32_t uses)
+struct line_view line_view_of(const struct timeline *timeline, size_t type)
 {
-	const struct line_view view = {timeline, &timeline->plan->lines[type], &timeline->types[type]};
-	const struct columns table = {region_columns, sizeof region_columns / sizeof *region_columns, view.type->region_count,
-	                              put_region_cell, &view};
-	text_printf(out, "\nline \"%s\": ", view.type->name);
-	text_put_count(out, view.laid->cells, "cell", "cells");
+	return (struct line_view){timeline, &timeline->plan->lines[type], &timeline->types[type]};
+}
+
+struct columns regions_table(const struct line_view *view)
+{
+	return (struct columns){region_columns, sizeof region_columns / sizeof *region_columns, view->type->region_count, put_region_cell, view};
+}
+
+void put_line_figures(struct text *out, const struct line_view *view, uint32_t uses)
+{
+	const struct clock *clock = &view->timeline->plan->clock;
+	text_put_count(out, view->laid->cells, "cell", "cells");
 	text_put(out, ", ");
-	text_put_count(out, (uint64_t)view.laid->ticks, "tick", "ticks");
+	text_put_count(out, (uint64_t)view->laid->ticks, "tick", "ticks");
 	text_put(out, ", ");
-	put_microseconds(out, &timeline->plan->clock, fraction_whole(view.laid->ticks));
+	put_microseconds(out, clock, fraction_whole(view->laid->ticks));
 	text_put(out, " us");
-	put_cycles(out, &timeline->plan->clock, view.laid->ticks);
+	put_cycles(out, clock, view->laid->ticks);
 	text_put(out, "; ");
 	text_put_count(out, uses, "line", "lines");
-	text_put(out, " of the frame\n");
+	text_put(out, " of the frame");
+}
+
+static void put_line(struct text *out, const struct timeline *timeline, size_t type, uint32_t uses)
+{
+	const struct line_view view = line_view_of(timeline, type);
+	const struct columns table = regions_table(&view);
+	text_printf(out, "\nline \"%s\": ", view.type->name);
+	put_line_figures(out, &view, uses);
+	text_put(out, "\n");
 	if (view.laid->auto_stretched > 0)
 		text_printf(out, "stretch: auto chose %" PRIu32 " stretched, the fewest that meet the phase\n", view.laid->auto_stretched);
 	view_columns(out, &table, TERMINAL_CHARACTERS);
 }
 
-static void put_frequency(struct text *out, struct fraction hertz)
+void put_hertz(struct text *out, struct fraction hertz)
 {
 	struct fraction megahertz;
 	text_put_fraction(out, hertz);
@@ -168,7 +176,7 @@ static void put_head(struct text *out, const struct plan *plan)
 		excerpt_put_printable(plan->note, strlen(plan->note), out);
 	}
 	text_put(out, "\nclock: ");
-	put_frequency(out, clock->master_hz);
+	put_hertz(out, clock->master_hz);
 	if (clock->has_accuracy) {
 		text_put(out, " within ");
 		text_put_rounded(out, clock->accuracy_ppm, 6);
@@ -181,15 +189,14 @@ static void put_head(struct text *out, const struct plan *plan)
 	text_put(out, "\n");
 	if (clock->has_subcarrier) {
 		text_put(out, "subcarrier: ");
-		put_frequency(out, clock->subcarrier_hz);
+		put_hertz(out, clock->subcarrier_hz);
 		text_put(out, "\n");
 	}
 }
 
-static void put_frame(struct text *out, const struct timeline *timeline)
+void put_frame_figures(struct text *out, const struct timeline *timeline)
 {
 	struct fraction seconds, rate;
-	text_put(out, "\nframe: ");
 	text_put_count(out, timeline->line_count, "line", "lines");
 	text_put(out, ", ");
 	text_put_count(out, timeline->cell_count, "cell", "cells");
@@ -203,7 +210,6 @@ static void put_frame(struct text *out, const struct timeline *timeline)
 		text_put_rounded(out, rate, 6);
 		text_put(out, " Hz");
 	}
-	text_put(out, "\n");
 }
 
 // Says which signals of the line stage could as well come from the frame stage. False when memory is out.
@@ -239,7 +245,9 @@ bool view_check(struct text *out, const struct timeline *timeline, bool *kept, b
 		view_divider(out, &plan->clock);
 		for (size_t type = 0; type < plan->line_count; type++)
 			put_line(out, timeline, type, uses[type]);
-		put_frame(out, timeline);
+		text_put(out, "\nframe: ");
+		put_frame_figures(out, timeline);
+		text_put(out, "\n");
 		view_placement(out, timeline);
 		good = put_suggestion(out, timeline, arena);
 		text_put(out, "\n");

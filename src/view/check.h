@@ -4,9 +4,32 @@
 
 #include <jansson.h>
 #include <stdbool.h>
+#include <stdint.h>
 
+#include "view/columns.h"
+
+struct arena;
+struct fraction;
 struct text;
 struct timeline;
+
+// A line type of a timeline, and the table of its regions.
+struct line_view {
+	const struct timeline *timeline;
+	const struct line_type *type;
+	const struct laid_line *laid;
+};
+struct line_view line_view_of(const struct timeline *timeline, size_t type);
+// The view must outlive the table. Cannot fail.
+struct columns regions_table(const struct line_view *view);
+
+// How many lines of the frame have each type: an array in the arena. NULL when memory is out.
+uint32_t *count_uses(const struct timeline *timeline, struct arena *arena);
+
+// In words, without line breaks: a line type, used by so many lines; the frame; "157500000/11 Hz (14.318182 MHz)".
+void put_line_figures(struct text *out, const struct line_view *view, uint32_t uses);
+void put_frame_figures(struct text *out, const struct timeline *timeline);
+void put_hertz(struct text *out, struct fraction hertz);
 
 // Puts the report of `check` for a terminal. *kept (may be NULL): colour is what the plan demands; *advice_kept (may be NULL): limits are kept and
 // the speed suffices. False when memory is out.

@@ -70,24 +70,22 @@ static void put_words(struct text *out, const char *before, size_t indent, struc
 	text_release(words);
 }
 
-static void put_counts(struct text *out, const struct divider *divider)
+void put_divider_counts(struct text *words, const struct divider *divider)
 {
 	const int64_t last = divider->cell_ticks - 1, stretch = divider->stretch_ticks;
-	struct text words = {0};
 	if (divider->bits == 0) {
-		text_put(out, "divider: none, a cell is one tick\n");
+		text_put(words, "divider: none, a cell is one tick");
 		return;
 	}
-	text_put(&words, "divider of ");
-	text_put_count(&words, divider->bits, "bit", "bits");
-	text_put(&words, ": ");
-	text_printf(&words, last > 0 ? "counts 0 to %" PRId64 : "count %" PRId64, last);
+	text_put(words, "divider of ");
+	text_put_count(words, divider->bits, "bit", "bits");
+	text_put(words, ": ");
+	text_printf(words, last > 0 ? "counts 0 to %" PRId64 : "count %" PRId64, last);
 	if (stretch > 0) {
-		text_printf(&words, "; in a stretched cell count %" PRId64 " lengthens by ", last);
-		text_put_count(&words, (uint64_t)stretch, "tick", "ticks");
-		text_printf(&words, stretch > 1 ? ", counts %" PRId64 " to %" PRId64 : ", count %" PRId64, last + 1, last + stretch);
+		text_printf(words, "; in a stretched cell count %" PRId64 " lengthens by ", last);
+		text_put_count(words, (uint64_t)stretch, "tick", "ticks");
+		text_printf(words, stretch > 1 ? ", counts %" PRId64 " to %" PRId64 : ", count %" PRId64, last + 1, last + stretch);
 	}
-	put_words(out, "", 2, &words);
 }
 
 static const char *source_words(enum tap_source source)
@@ -132,21 +130,19 @@ static void end_tap(struct text *out, const struct divider_view *view, const cha
 	put_words(out, before, NAME_CHARACTERS, words);
 }
 
-static void put_dot(struct text *out, const struct divider_view *view)
+void put_dot_words(struct text *words, const struct divider *divider)
 {
-	const struct divider_tap *tap = &view->divider.dot;
-	struct text words = {0};
-	put_source(&words, tap);
-	if (tap->source != TAP_MASTER) {
-		text_put(&words, "; a cell is ");
-		text_put_fraction(&words, tap->cell_cycles);
-		if (view->divider.stretch_ticks > 0) {
-			text_put(&words, ", a stretched one ");
-			text_put_fraction(&words, tap->stretched_cycles);
-		}
-		text_put(&words, tap->in_step ? " dots: in step" : " dots: out of step");
+	const struct divider_tap *tap = &divider->dot;
+	put_source(words, tap);
+	if (tap->source == TAP_MASTER)
+		return;
+	text_put(words, "; a cell is ");
+	text_put_fraction(words, tap->cell_cycles);
+	if (divider->stretch_ticks > 0) {
+		text_put(words, ", a stretched one ");
+		text_put_fraction(words, tap->stretched_cycles);
 	}
-	end_tap(out, view, "dot tap", tap, &words);
+	text_put(words, tap->in_step ? " dots: in step" : " dots: out of step");
 }
 
 // Puts what a cell of so many cycles does with the phase: "keeps it" or "moves it by 1/4 cycle".
@@ -162,34 +158,37 @@ static void put_phase(struct text *words, const char *phase, struct fraction cyc
 	text_put(words, " cycle");
 }
 
-static void put_subcarrier(struct text *out, const struct divider_view *view)
+void put_subcarrier_words(struct text *words, const struct divider *divider)
 {
-	const struct divider_tap *tap = &view->divider.subcarrier;
-	struct text words = {0};
-	put_source(&words, tap);
+	const struct divider_tap *tap = &divider->subcarrier;
+	put_source(words, tap);
 	if (tap->exact && tap->source != TAP_MASTER) {
-		text_put(&words, "; a cell ");
-		put_phase(&words, "its phase", tap->cell_cycles);
-		if (view->divider.stretch_ticks > 0) {
-			text_put(&words, ", a stretched one ");
-			put_phase(&words, "it", tap->stretched_cycles);
+		text_put(words, "; a cell ");
+		put_phase(words, "its phase", tap->cell_cycles);
+		if (divider->stretch_ticks > 0) {
+			text_put(words, ", a stretched one ");
+			put_phase(words, "it", tap->stretched_cycles);
 		}
 	}
 	if (tap->source == TAP_COUNTER)
-		text_put(&words, tap->in_step ? ": in step" : ": out of step");
-	end_tap(out, view, "subcarrier tap", tap, &words);
+		text_put(words, tap->in_step ? ": in step" : ": out of step");
 }
 
 void view_divider(struct text *out, const struct clock *clock)
 {
 	const struct divider_view view = view_of_clock(clock);
 	const struct divider *divider = &view.divider;
-	put_counts(out, divider);
+	struct text counts = {0}, dot = {0}, subcarrier = {0};
+	put_divider_counts(&counts, divider);
+	put_words(out, "", 2, &counts);
 	if (divider_tap_has_levels(&divider->dot) || divider_tap_has_levels(&divider->subcarrier))
 		put_row(out, &view, "count", NULL);
-	put_dot(out, &view);
-	if (divider->subcarrier.source != TAP_NONE)
-		put_subcarrier(out, &view);
+	put_dot_words(&dot, divider);
+	end_tap(out, &view, "dot tap", &divider->dot, &dot);
+	if (divider->subcarrier.source == TAP_NONE)
+		return;
+	put_subcarrier_words(&subcarrier, divider);
+	end_tap(out, &view, "subcarrier tap", &divider->subcarrier, &subcarrier);
 }
 
 static json_t *ticks_json(int64_t ticks)

@@ -5,11 +5,17 @@
 #include <jansson.h>
 
 struct clock;
+struct divider;
 struct text;
 
 // Puts the sequence of counts, the taps' levels at each (H, L; " .. " where counts are left out, " | " where a stretched cell
 // goes on), where each tap comes from, and whether it stays in step. When memory is out, out->failed is set.
 void view_divider(struct text *out, const struct clock *clock);
+
+// In words, without line breaks: the counts, where the dots come from, where the subcarrier (if there is one) comes from.
+void put_divider_counts(struct text *words, const struct divider *divider);
+void put_dot_words(struct text *words, const struct divider *divider);
+void put_subcarrier_words(struct text *words, const struct divider *divider);
 
 // The same as
 //   { "cell_counts": how many ticks; with a stretch "stretched_cell_counts", and "lengthens": the count after which a

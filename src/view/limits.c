@@ -8,8 +8,6 @@
 #include "view/figures.h"
 #include "view/standards.h"
 
-#define COUNT_OF(array) (sizeof(array) / sizeof((array)[0]))
-
 static const struct plan *plan_of_proofs(const struct proofs *proofs)
 {
 	return proofs->timeline->plan;
@@ -92,11 +90,7 @@ static void put_interval_unit(struct text *out, enum limit_item item, struct int
 
 enum { COLUMN_ITEM, COLUMN_UNIT, COLUMN_MEASURED, COLUMN_NOMINAL, COLUMN_LOW, COLUMN_HIGH, COLUMN_MARGIN, COLUMN_VERDICT, COLUMN_OTHER };
 
-struct limits_view {
-	const struct proofs *proofs;
-	enum limit_item items[ITEM_COUNT]; // that were measured and have a limit
-	size_t count;
-};
+_Static_assert(COLUMN_OTHER + 1 == LIMITS_COLUMNS, "the header has room for the columns");
 
 static bool has_limit(const struct proofs *proofs, enum limit_item item)
 {
@@ -170,7 +164,7 @@ static void put_standard_name(struct text *out, const struct proofs *proofs)
 }
 
 // Puts the names of all items that were not measured for one reason, from the first that has it.
-static void put_unmeasured(struct text *out, const struct proofs *proofs, size_t first)
+static void put_unmeasured(struct text *out, const struct proofs *proofs, size_t first, put_note *put)
 {
 	const struct measured *items = proofs->limits.measurement->items;
 	struct text words = {0};
@@ -178,13 +172,10 @@ static void put_unmeasured(struct text *out, const struct proofs *proofs, size_t
 	for (size_t item = first; item < ITEM_COUNT; item++)
 		if (has_limit(proofs, (enum limit_item)item) && !items[item].known && strcmp(items[item].why, items[first].why) == 0)
 			text_printf(&words, "%s %s", item == first ? "" : ",", limit_item_facts((enum limit_item)item)->name);
-	text_put_wrapped(out, text_string(&words), 0, 2);
-	text_put(out, "\n");
-	out->failed = out->failed || words.failed;
-	text_release(&words);
+	put(out, &words);
 }
 
-static void put_all_unmeasured(struct text *out, const struct proofs *proofs)
+static void put_all_unmeasured(struct text *out, const struct proofs *proofs, put_note *put)
 {
 	const struct measured *items = proofs->limits.measurement->items;
 	for (size_t item = 0; item < ITEM_COUNT; item++) {
@@ -192,13 +183,13 @@ static void put_all_unmeasured(struct text *out, const struct proofs *proofs)
 		for (size_t before = 0; before < item && !told; before++)
 			told = has_limit(proofs, (enum limit_item)before) && !items[before].known && strcmp(items[before].why, items[item].why) == 0;
 		if (!told)
-			put_unmeasured(out, proofs, item);
+			put_unmeasured(out, proofs, item, put);
 	}
 }
 
 #define MOST_RUNS 8u // of lines without burst, in text; JSON has them all
 
-static void put_burstless(struct text *out, const struct measurement *measurement)
+static void put_burstless(struct text *out, const struct measurement *measurement, put_note *put)
 {
 	struct text words = {0};
 	if (!measurement->items[ITEM_LINES_WITHOUT_BURST].known || !measurement->numbered)
@@ -215,10 +206,47 @@ static void put_burstless(struct text *out, const struct measurement *measuremen
 	if (measurement->burstless_count == 0)
 		text_put(&words, " none");
 	text_put(&words, measurement->pauses_kept ? ", as the standard has it" : "; the standard has others");
-	text_put_wrapped(out, text_string(&words), 0, 2);
+	put(out, &words);
+}
+
+bool limits_view_make(const struct proofs *proofs, struct limits_view *view)
+{
+	if (proofs->limits.measurement == NULL || proofs->limits.measurement->flaw != NULL)
+		return false;
+	const enum limit_grade grade = plan_of_proofs(proofs)->grade;
+	const struct column columns[LIMITS_COLUMNS] = {
+		[COLUMN_ITEM] = {"item", false},     [COLUMN_UNIT] = {"unit", false}, [COLUMN_MEASURED] = {"measured", true},
+		[COLUMN_NOMINAL] = {"nominal", true}, [COLUMN_LOW] = {"low", true},    [COLUMN_HIGH] = {"high", true},
+		[COLUMN_MARGIN] = {"margin", true},  [COLUMN_VERDICT] = {limit_grade_name(grade), false},
+		[COLUMN_OTHER] = {limit_grade_name(other_grade(proofs)), false},
+	};
+	*view = (struct limits_view){.proofs = proofs};
+	memcpy(view->columns, columns, sizeof columns);
+	for (size_t item = 0; item < ITEM_COUNT; item++)
+		if (has_limit(proofs, (enum limit_item)item) && proofs->limits.measurement->items[item].known)
+			view->items[view->count++] = (enum limit_item)item;
+	return true;
+}
+
+struct columns limits_table(const struct limits_view *view)
+{
+	return (struct columns){view->columns, LIMITS_COLUMNS, view->count, put_table_cell, view};
+}
+
+void put_limits_heading(struct text *out, const struct proofs *proofs)
+{
+	text_put(out, "limits of ");
+	put_standard_name(out, proofs);
+	text_printf(out, ", grade %s%s", limit_grade_name(plan_of_proofs(proofs)->grade),
+	            plan_of_proofs(proofs)->clock.has_accuracy ? "; margins with the clock's accuracy" : "");
+}
+
+static void put_wrapped_note(struct text *out, struct text *words)
+{
+	text_put_wrapped(out, text_string(words), 0, 2);
 	text_put(out, "\n");
-	out->failed = out->failed || words.failed;
-	text_release(&words);
+	out->failed = out->failed || words->failed;
+	text_release(words);
 }
 
 // How far the picture's middle is from the standard's, at its farther end. False if it is not known.
@@ -247,7 +275,7 @@ static void put_offset(struct text *words, enum limit_item item, struct fraction
 	text_printf(words, " %s", is_less ? less : more);
 }
 
-static void put_centring(struct text *out, const struct proofs *proofs)
+static void put_centring(struct text *out, const struct proofs *proofs, put_note *put)
 {
 	struct fraction across, down;
 	struct text words = {0};
@@ -261,36 +289,26 @@ static void put_centring(struct text *out, const struct proofs *proofs)
 		text_put(&words, ", ");
 		put_offset(&words, ITEM_VERTICAL_CENTRE, down, "up", "down");
 	}
-	text_put_wrapped(out, text_string(&words), 0, 2);
-	text_put(out, "\n");
-	out->failed = out->failed || words.failed;
-	text_release(&words);
+	put(out, &words);
+}
+
+void put_limits_notes(struct text *out, const struct proofs *proofs, put_note *put)
+{
+	put_centring(out, proofs, put);
+	put_all_unmeasured(out, proofs, put);
+	put_burstless(out, proofs->limits.measurement, put);
 }
 
 void view_limits(struct text *out, const struct proofs *proofs)
 {
-	const enum limit_grade grade = proofs->limits.measurement == NULL ? GRADE_MONITOR : plan_of_proofs(proofs)->grade;
-	const struct column columns[] = {
-		[COLUMN_ITEM] = {"item", false},     [COLUMN_UNIT] = {"unit", false}, [COLUMN_MEASURED] = {"measured", true},
-		[COLUMN_NOMINAL] = {"nominal", true}, [COLUMN_LOW] = {"low", true},    [COLUMN_HIGH] = {"high", true},
-		[COLUMN_MARGIN] = {"margin", true},  [COLUMN_VERDICT] = {limit_grade_name(grade), false},
-		[COLUMN_OTHER] = {limit_grade_name(grade == GRADE_STUDIO ? GRADE_MONITOR : GRADE_STUDIO), false},
-	};
-	struct limits_view view = {.proofs = proofs};
-	if (proofs->limits.measurement == NULL || proofs->limits.measurement->flaw != NULL)
+	struct limits_view view;
+	if (!limits_view_make(proofs, &view))
 		return;
-	for (size_t item = 0; item < ITEM_COUNT; item++)
-		if (has_limit(proofs, (enum limit_item)item) && proofs->limits.measurement->items[item].known)
-			view.items[view.count++] = (enum limit_item)item;
-	const struct columns table = {columns, COUNT_OF(columns), view.count, put_table_cell, &view};
-	text_put(out, "limits of ");
-	put_standard_name(out, proofs);
-	text_printf(out, ", grade %s%s\n", limit_grade_name(grade),
-	            plan_of_proofs(proofs)->clock.has_accuracy ? "; margins with the clock's accuracy" : "");
+	const struct columns table = limits_table(&view);
+	put_limits_heading(out, proofs);
+	text_put(out, "\n");
 	view_columns(out, &table, TERMINAL_CHARACTERS);
-	put_centring(out, proofs);
-	put_all_unmeasured(out, proofs);
-	put_burstless(out, proofs->limits.measurement);
+	put_limits_notes(out, proofs, put_wrapped_note);
 }
 
 // In words.

@@ -5,8 +5,28 @@
 #include <jansson.h>
 
 #include "proof/proof.h"
+#include "view/columns.h"
 
 struct text;
+
+#define LIMITS_COLUMNS 9
+
+// The table of limits, and what it is made of.
+struct limits_view {
+	const struct proofs *proofs;
+	enum limit_item items[ITEM_COUNT]; // that were measured and have a limit, a row each
+	size_t count;
+	struct column columns[LIMITS_COLUMNS];
+};
+
+// False, with *view as it was, where nothing was measured against a standard.
+bool limits_view_make(const struct proofs *proofs, struct limits_view *view);
+// The view must outlive the table. Cannot fail.
+struct columns limits_table(const struct limits_view *view);
+// Puts what the table is, in words; and, note by note, what could not be measured and the lines without burst. `put` releases the words.
+void put_limits_heading(struct text *out, const struct proofs *proofs);
+typedef void put_note(struct text *out, struct text *words);
+void put_limits_notes(struct text *out, const struct proofs *proofs, put_note *put);
 
 // Puts a table of what was measured beside the standard's limits at the plan's grade, with the verdict of the other grade in the last
 // column; then what could not be measured, and the lines without burst. Only where the plan names a standard that was measured. When memory is

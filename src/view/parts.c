@@ -100,10 +100,10 @@ static size_t grades_of_one_source(const struct part *part, size_t first)
 	return end - first;
 }
 
-// A part has one row for its organisation and one for each run of grades that have the same source.
+// A part has one row for its organisation, one for its pinout if that is known, and one for each run of grades that have the same source.
 static size_t source_rows(const struct part *part)
 {
-	size_t rows = 1;
+	size_t rows = part->pins != NULL ? 2 : 1;
 	for (size_t grade = 0; grade < part->grade_count; grade += grades_of_one_source(part, grade))
 		rows++;
 	return rows;
@@ -111,13 +111,16 @@ static size_t source_rows(const struct part *part)
 
 static void put_part_source(struct text *out, const struct part *part, size_t row, size_t column)
 {
+	const size_t before_grades = part->pins != NULL ? 2 : 1;
 	size_t first = 0;
-	for (size_t earlier = 1; earlier < row; earlier++)
+	for (size_t earlier = before_grades; earlier < row; earlier++)
 		first += grades_of_one_source(part, first);
 	if (column == 0)
 		text_put(out, part->name);
 	else if (row == 0)
 		text_put(out, column == 1 ? "organisation, package" : part->source);
+	else if (row < before_grades)
+		text_put(out, column == 1 ? "pinout" : part->pinout_source);
 	else if (column == 1)
 		put_grades(out, &part->grades[first], grades_of_one_source(part, first));
 	else
@@ -239,6 +242,18 @@ static bool append(json_t **array, json_t *value)
 	return false;
 }
 
+// null where it is not known.
+static json_t *json_of_pinout(const struct part *part)
+{
+	if (part->pins == NULL)
+		return json_null();
+	json_t *pins = json_array();
+	for (unsigned pin = 0; pin < part->pin_count; pin++)
+		if (!append(&pins, json_string(part->pins[pin].name)))
+			break;
+	return json_pack("{s:o, s:s}", "pins", pins, "source", part->pinout_source);
+}
+
 static json_t *json_of_part(const struct part *part)
 {
 	struct text organisation = {0};
@@ -247,10 +262,10 @@ static json_t *json_of_part(const struct part *part)
 	for (size_t index = 0; index < part->grade_count; index++)
 		if (!append(&access, json_of_time(part->grades[index].access_s, part->grades[index].source)))
 			break;
-	return json_pack("{s:s, s:o, s:I, s:i, s:i, s:s, s:s, s:o}", "name", part->name, "organisation",
+	return json_pack("{s:s, s:o, s:I, s:i, s:i, s:s, s:s, s:o, s:o}", "name", part->name, "organisation",
 	                 json_of_text(&organisation), "bytes", (json_int_t)part_bytes(part), "address_pins",
 	                 (int)part->address_pins, "data_pins", (int)part->data_pins, "package", part->package, "source",
-	                 part->source, "access", access);
+	                 part->source, "pinout", json_of_pinout(part), "access", access);
 }
 
 static json_t *json_of_logic_part(const struct logic_part *part)

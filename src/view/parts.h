@@ -14,7 +14,8 @@ void view_parts(struct text *out, const struct catalogue *catalogue);
 // The catalogue as
 //   { "memories": [MEMORY…],
 //     "latches": [LOGIC…], "counters": [LOGIC…], "decoders": [LOGIC…] }
-//   MEMORY: { "name", "organisation", "bytes", "address_pins", "data_pins", "package", "source", "access": [TIME…] }
+//   MEMORY: { "name", "organisation", "bytes", "address_pins", "data_pins", "package", "source", "pinout": { "pins": [name…] from pin 1 on,
+//             "source" } or null, "access": [TIME…] }
 //   LOGIC: { "name", "conditions", "delay": TIME, "setup": TIME } (a decoder has no setup)
 //   TIME:  { "time": "150 ns" (exact), "seconds": "3/20000000" (exact), "ns": 150 (rounded), "source" }
 // A new reference, owned by the caller; NULL when memory is out.

@@ -60,6 +60,12 @@ void put_sweep(struct text *out, const struct sweep *asked, const struct sweep_r
 // Puts the figures of a proof, in words, without line breaks. Not for proofs that have a reason_of.
 void put_proof_figures(struct text *out, const struct proofs *proofs, enum proof_kind kind);
 
+// In proofs_text.c. The word of a verdict: "pass", "FAIL", "miss" or "none". Cannot fail.
+const char *verdict_word(const struct proofs *proofs, enum proof_kind kind);
+// Gives the details of a failed proof, and the codes that were found, to `put` one by one; it releases the words.
+typedef void put_detail(struct text *out, struct text *words);
+void put_proof_details(struct text *out, const struct proofs *proofs, enum proof_kind kind, put_detail *put);
+
 // In proofs_json.c: sets the five keys of a PLACE, see view/proofs.h.
 void json_put_place(json_t **object, const struct timeline *timeline, uint32_t cell);
 

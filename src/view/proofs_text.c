@@ -22,6 +22,7 @@ struct report {
 	struct text words;           // of the line that is being made
 	const struct proofs *proofs;
 	bool colour;
+	put_detail *put_detail;      // takes a detail's words; NULL: they are wrapped for a terminal
 };
 
 struct verdict_row {
@@ -55,6 +56,10 @@ static void put_words(struct report *report, size_t used, size_t indent)
 
 static void end_detail(struct report *report)
 {
+	if (report->put_detail != NULL) {
+		report->put_detail(report->out, &report->words);
+		return;
+	}
 	text_put_repeated(report->out, ' ', DETAIL_INDENT);
 	put_words(report, DETAIL_INDENT, DETAIL_WRAPPED_INDENT);
 }
@@ -265,15 +270,29 @@ static bool names_lines(const struct proofs *proofs)
 
 void view_proof(struct text *out, const struct proofs *proofs, enum proof_kind kind, bool colour)
 {
-	struct report report = {out, {0}, proofs, colour};
+	struct report report = {out, {0}, proofs, colour, NULL};
 	put_proof(&report, kind);
+	out->failed = out->failed || report.words.failed;
+	text_release(&report.words);
+}
+
+const char *verdict_word(const struct proofs *proofs, enum proof_kind kind)
+{
+	return row_of_verdict(proofs, kind)->word;
+}
+
+void put_proof_details(struct text *out, const struct proofs *proofs, enum proof_kind kind, put_detail *put)
+{
+	struct report report = {out, {0}, proofs, false, put};
+	if (reason_of(proofs, kind) == NULL)
+		put_details(&report, kind);
 	out->failed = out->failed || report.words.failed;
 	text_release(&report.words);
 }
 
 void view_must(struct text *out, const char *name, bool kept, const char *words, bool colour)
 {
-	struct report report = {out, {0}, NULL, colour};
+	struct report report = {out, {0}, NULL, colour, NULL};
 	put_verdict(&report, kept ? &pass_row : &fail_row, name);
 	text_put(&report.words, words);
 	put_words(&report, FIGURES_INDENT, FIGURES_INDENT);

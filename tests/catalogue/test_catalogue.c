@@ -128,6 +128,65 @@ static void packages_have_room_for_the_pins(void **state)
 	}
 }
 
+// Pins by their numbers as data sheets print them, from the sheets and the KiCad library's symbols that parts.yaml names: those where the
+// parts differ, and both ends of the rest.
+struct expected_pin {
+	const char *part;
+	unsigned number;
+	const char *name;
+};
+
+static const struct expected_pin expected_pins[] = {
+	// AT28C16 Rev 0540B.
+	{"28C16", 1, "A7"}, {"28C16", 8, "A0"}, {"28C16", 9, "D0"}, {"28C16", 17, "D7"}, {"28C16", 18, "/CE"}, {"28C16", 19, "A10"},
+	{"28C16", 20, "/OE"}, {"28C16", 21, "/WE"}, {"28C16", 22, "A9"}, {"28C16", 23, "A8"}, {"28C16", 12, "GND"}, {"28C16", 24, "VCC"},
+	// AT28C64.
+	{"28C64", 1, "RDY"}, {"28C64", 2, "A12"}, {"28C64", 23, "A11"}, {"28C64", 26, "NC"}, {"28C64", 27, "/WE"},
+	// AT28C256 Rev 0006M; KiCad. A14 and A13 change places with /WE and VPP in the EPROM.
+	{"28C256", 1, "A14"}, {"28C256", 26, "A13"}, {"28C256", 27, "/WE"}, {"28C256", 14, "GND"}, {"28C256", 28, "VCC"},
+	{"27C256", 1, "VPP"}, {"27C256", 26, "A13"}, {"27C256", 27, "A14"}, {"27C256", 20, "/CE"}, {"27C256", 22, "/OE"},
+	{"27C512", 1, "A15"}, {"27C512", 27, "A14"}, {"27C512", 22, "/OE/VPP"},
+	// AT28C010 Rev 0353E.
+	{"28C010", 1, "NC"}, {"28C010", 2, "A16"}, {"28C010", 3, "A15"}, {"28C010", 4, "A12"}, {"28C010", 12, "A0"}, {"28C010", 13, "D0"},
+	{"28C010", 16, "GND"}, {"28C010", 22, "/CE"}, {"28C010", 24, "/OE"}, {"28C010", 28, "A13"}, {"28C010", 29, "A14"},
+	{"28C010", 30, "NC"}, {"28C010", 31, "/WE"}, {"28C010", 32, "VCC"},
+	// KiCad Memory_Flash and Memory_EPROM 6.0.10.
+	{"39SF010A", 30, "NC"}, {"39SF020A", 30, "A17"}, {"39SF040", 1, "A18"}, {"39SF040", 31, "/WE"}, {"27C010", 31, "/PGM"},
+	{"27C020", 30, "A17"}, {"27C040", 1, "VPP"}, {"27C040", 31, "A18"}, {"27C080", 1, "A19"},
+	// From memory.
+	{"27C1024", 1, "VPP"}, {"27C1024", 2, "/CE"}, {"27C1024", 3, "D15"}, {"27C1024", 11, "GND"}, {"27C1024", 19, "D0"},
+	{"27C1024", 20, "/OE"}, {"27C1024", 21, "A0"}, {"27C1024", 30, "GND"}, {"27C1024", 37, "A15"}, {"27C1024", 40, "VCC"},
+};
+
+static void pins_are_where_data_sheets_have_them(void **state)
+{
+	const struct fixture *fixture = *state;
+	for (size_t index = 0; index < COUNT_OF(expected_pins); index++) {
+		const struct part *part = catalogue_part(fixture->catalogue, expected_pins[index].part);
+		assert_non_null(part);
+		assert_true(expected_pins[index].number <= part->pin_count);
+		assert_string_equal(part->pins[expected_pins[index].number - 1].name, expected_pins[index].name);
+	}
+}
+
+// JEDEC's byte-wide packages: supply and ground at opposite corners, and every pin of the package has its name.
+static void packages_have_all_their_pins(void **state)
+{
+	const struct fixture *fixture = *state;
+	for (size_t index = 0; index < fixture->catalogue->part_count; index++) {
+		const struct part *part = &fixture->catalogue->parts[index];
+		unsigned pins = 0, grounds = 0;
+		assert_int_equal(sscanf(part->package, "DIP-%u", &pins), 1);
+		assert_int_equal(part->pin_count, pins);
+		assert_int_equal(part->pins[pins - 1].kind, PIN_SUPPLY);
+		for (unsigned pin = 0; pin < pins; pin++)
+			grounds += part->pins[pin].kind == PIN_GROUND;
+		assert_int_equal(grounds, part->data_pins == 16 ? 2 : 1);
+		assert_true(part_pin_number(part, PIN_ADDRESS, part->address_pins - 1) > 0);
+		assert_int_equal(part_pin_number(part, PIN_ADDRESS, part->address_pins), 0);
+	}
+}
+
 struct expected_logic {
 	const char *name;
 	enum logic_kind kind;
@@ -196,6 +255,7 @@ static void every_value_has_a_source(void **state)
 	for (size_t index = 0; index < fixture->catalogue->part_count; index++) {
 		const struct part *part = &fixture->catalogue->parts[index];
 		assert_true(is_source(part->source));
+		assert_true(is_source(part->pinout_source));
 		assert_true(part->grade_count > 0);
 		for (size_t grade = 0; grade < part->grade_count; grade++)
 			assert_true(is_source(part->grades[grade].source));
@@ -246,6 +306,7 @@ static void capacity_counts_both_bytes_of_a_word(void **state)
 #define WITH_MEMORY(memory) CATALOGUE(memory, GOOD_LATCH, GOOD_COUNTER, GOOD_DECODER)
 #define MEMORY_WITH(pins, width, more) \
 	WITH_MEMORY("  M: { address pins: " pins ", data pins: " width ", package: DIP-16, " more " }\n")
+#define PINOUT_OF(pins) MEMORY_WITH("1", "8", "source: s, access: [ { time: 9 ns, source: s } ], pinout: " pins)
 #define ACCESS_OF(grades) MEMORY_WITH("4", "8", "source: s, access: [ " grades " ]")
 
 struct reading {
@@ -327,6 +388,12 @@ static const struct bad_catalogue bad_catalogues[] = {
 	 RULE_DOUBLED_NAME},
 	{MEMORY_WITH("0", "8", "source: s, access: [ { time: 9 ns, source: s } ]"), RULE_BAD_NUMBER},
 	{MEMORY_WITH("27", "8", "source: s, access: [ { time: 9 ns, source: s } ]"), RULE_BAD_NUMBER},
+	{PINOUT_OF("{ pins: [A0, D0, D1, D2, D3, D4, D5, D6, D7] }"), RULE_MISSING_KEY},
+	{PINOUT_OF("{ pins: A0, source: s }"), RULE_NODE_KIND},
+	{PINOUT_OF("{ pins: [], source: s }"), RULE_TOO_MANY},
+	{PINOUT_OF("{ pins: [A0, A1, D0, D1, D2, D3, D4, D5, D6, D7], source: s }"), RULE_BAD_CHOICE},
+	{PINOUT_OF("{ pins: [A0, D0, D1, D2, D3, D4, D5, D6, D7, D7], source: s }"), RULE_DOUBLED_NAME},
+	{PINOUT_OF("{ pins: [A0, D0, D1, D2, D3, D4, D5, D6, NC], source: s }"), RULE_BAD_CHOICE},
 	{MEMORY_WITH("4", "12", "source: s, access: [ { time: 9 ns, source: s } ]"), RULE_BAD_CHOICE},
 	{MEMORY_WITH("4", "8", "access: [ { time: 9 ns, source: s } ]"), RULE_MISSING_KEY},
 	{MEMORY_WITH("4", "8", "source: , access: [ { time: 9 ns, source: s } ]"), RULE_NODE_KIND},
@@ -375,6 +442,8 @@ int main(void)
 		cmocka_unit_test(loads_without_a_diagnostic),
 		cmocka_unit_test(memories_are_the_published_ones),
 		cmocka_unit_test(packages_have_room_for_the_pins),
+		cmocka_unit_test(pins_are_where_data_sheets_have_them),
+		cmocka_unit_test(packages_have_all_their_pins),
 		cmocka_unit_test(logic_has_the_worst_case_times),
 		cmocka_unit_test(conditions_go_with_the_family),
 		cmocka_unit_test(every_value_has_a_source),

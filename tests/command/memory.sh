@@ -61,6 +61,7 @@ fi
 "$SCANLATCH" build "$plan" -o "$work/images" >/dev/null
 refused_below check check "$plan"
 refused_below build build "$plan" --listing -o "$work/out"
+refused_below sheet sheet "$plan" -o "$work/out/sheet.html"
 refused_below prove prove --json "$plan" "$work/images"
 refused_below fit fit --standard composite-625 --columns 80
 refused_below schema schema

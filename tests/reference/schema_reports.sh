@@ -35,6 +35,7 @@ all_reports() {
 	report "$name.check" check "$1"
 	report "$name.build" build "$1" -o "$work/images/$name" --unproven
 	report "$name.prove" prove "$1" "$work/images/$name"
+	report "$name.sheet" sheet "$1" -o "$work/sheet.html"
 	mkdir "$work/reports/$name"
 	"$python" -B tests/reference/schema_damage.py 1 "$work/images/$name" "$1" "$work/reports/$name" || fail "$1: images are damaged"
 }
@@ -119,6 +120,7 @@ done
 described check "$work"/reports/*.check
 described build "$work"/reports/*.build
 described prove "$work"/reports/*.prove "$work"/reports/*/*.prove
+described sheet "$work"/reports/*.sheet
 described manifest "$work"/images/*/*.manifest.json
 
 # The reports are of many kinds, or the above shows little.

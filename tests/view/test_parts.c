@@ -20,10 +20,11 @@ static const struct access_grade harbour_grades[] = {
 	{{1, 3000000000}, "by division"},  // 1/3 ns
 };
 static const struct access_grade tiny_grades[] = {{{1, 8000000}, "from memory"}}; // 125 ns
+static const struct package_pin harbour_pins[] = {{"A3", PIN_ADDRESS, 3}, {"GND", PIN_GROUND, 0}};
 static const struct part harbour_parts[] = {
-	{"HARBOUR32", 15, 8, "DIP-28", harbour_grades, 4, "chart of the pins"},
-	{"WIDE1M", 20, 16, "", tiny_grades, 1, "s"},
-	{"TINY", 4, 8, "DIP-16", tiny_grades, 1, "t"},
+	{"HARBOUR32", 15, 8, "DIP-28", harbour_grades, 4, "chart of the pins", NULL, 0, NULL},
+	{"WIDE1M", 20, 16, "", tiny_grades, 1, "s", NULL, 0, NULL},
+	{"TINY", 4, 8, "DIP-16", tiny_grades, 1, "t", harbour_pins, 2, "drawn"},
 };
 static const struct logic_part harbour_logic[] = {
 	{"LATCH", LOGIC_LATCH, {21, 2000000000}, {3, 1000000000}, "4.5 V, 85 \xC2\xB0" "C", "delay sheet", "setup sheet"},
@@ -56,6 +57,7 @@ static void tables_are_aligned_and_followed_by_sources(void **state)
 		"WIDE1M     organisation, package  s\n"
 		"WIDE1M     125 ns                 from memory\n"
 		"TINY       organisation, package  t\n"
+		"TINY       pinout                 drawn\n"
 		"TINY       125 ns                 from memory\n"
 		"\n"
 		"Latches, counters and decoders (delay: clock, or a decoder's address, to output)\n"
@@ -81,7 +83,7 @@ static void a_time_that_no_nanoseconds_hold_is_put_in_seconds(void **state)
 {
 	(void)state;
 	const struct access_grade slow = {{INT64_C(4611686018427387904), 1}, "s"};
-	const struct part part = {"SLOW", 4, 8, "", &slow, 1, "s"};
+	const struct part part = {"SLOW", 4, 8, "", &slow, 1, "s", NULL, 0, NULL};
 	const struct catalogue catalogue = {&part, 1, NULL, 0};
 	struct text out = {0};
 	view_parts(&out, &catalogue);
@@ -127,6 +129,11 @@ static void json_has_exact_times_beside_rounded_ones(void **state)
 	assert_int_equal(json_array_size(access), 4);
 	assert_time(json_array_get(access, 0), "45 ns", "9/200000000", 45, "sheet one");
 	assert_time(json_array_get(access, 3), "1/3 ns", "1/3000000000", 1.0 / 3, "by division");
+	assert_true(json_is_null(json_object_get(memory, "pinout")));
+	const json_t *pinout = json_object_get(json_array_get(memories, 2), "pinout");
+	assert_int_equal(json_array_size(json_object_get(pinout, "pins")), 2);
+	assert_string_equal(json_string_value(json_array_get(json_object_get(pinout, "pins"), 0)), "A3");
+	assert_string_equal(string_of(pinout, "source"), "drawn");
 	json_decref(root);
 }
 

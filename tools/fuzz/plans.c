@@ -62,6 +62,7 @@ static bool prove(const scanlatch_images *images)
 	FUZZ_REQUIRE(passed || scanlatch_proofs_failed(proofs, false));
 	require_text(scanlatch_proofs_text(proofs, false));
 	require_json(scanlatch_proofs_json(proofs));
+	require_text(scanlatch_sheet(proofs, NULL, false));
 	const bool two = images->plan->plan->machine.form == FORM_LINE_FRAME;
 	const enum naive_verdict naive = two ? stages_judge(images, &longest) : naive_judge(images, &longest);
 	FUZZ_REQUIRE(naive != NAIVE_GOOD || passed);
