@@ -52,6 +52,8 @@ scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t 
 /* The same from a file; "-" is standard input, and called so. The file may also hold a set: then its plans are read too, and the result
  * stands for all of them: its name is the set's, its chips are those that they share, its images hold every bank, and its proofs judge each. */
 scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *messages);
+/* The same, where the file stands for another one: messages call it `name`, and the plans of a set are looked for in the folder of `name`. */
+scanlatch_plan *scanlatch_plan_read_file_as(const char *path, const char *name, scanlatch_messages *messages);
 void scanlatch_plan_destroy(scanlatch_plan *plan);
 
 /* The plan's name, as file names use it. Owned by the plan. Cannot fail. */
@@ -75,6 +77,15 @@ typedef struct scanlatch_images scanlatch_images;
 /* Chooses states, fills the tables and makes the images of a plan. NULL after adding an error to messages (a plan for which no states
  * can be found). The plan must outlive the images. */
 scanlatch_images *scanlatch_images_make(const scanlatch_plan *plan, scanlatch_messages *messages);
+
+/* The same, near to images that were read: cells keep the states that those gave them wherever the plan still allows it, so that as few bytes as may
+ * be change. What stands in the way is given up; damaged images are only less near. `old` are of this plan's chips, and of its name; `folder` is where
+ * they were read from: if there is a manifest, it tells where the old frame begins, and whether chips were wired otherwise, which is an error. */
+scanlatch_images *scanlatch_images_make_near(const scanlatch_plan *plan, const scanlatch_images *old, const char *folder,
+                                             scanlatch_messages *messages);
+
+/* How many bytes of a chip differ between two sets of images of one plan. Both must be complete. Cannot fail. */
+size_t scanlatch_images_differing(const scanlatch_images *left, const scanlatch_images *right, size_t chip);
 
 /* An empty set of images of a plan, to be read from files. NULL when memory is out. */
 scanlatch_images *scanlatch_images_create(const scanlatch_plan *plan);
@@ -191,6 +202,57 @@ char *scanlatch_draw_frame(const scanlatch_plan *plan, unsigned bank, bool inter
 char *scanlatch_draw_table(const scanlatch_images *images, unsigned bank, scanlatch_messages *messages);
 /* The phase of the subcarrier at the start of each line. */
 char *scanlatch_draw_phase(const scanlatch_plan *plan, unsigned bank, scanlatch_messages *messages);
+/* ---- Lifting: a plan read back out of images ---- */
+
+/* Reads a board from a file ("-" is standard input): a plan without lines and frame. A plan is taken too, its lines and frame are passed over; so
+ * is a set, whole. The result is for images that are read, and for lifting: what wants a plan's lines gives NULL, as if memory were
+ * out. NULL after adding at least one error to messages, which keep the text and must outlive the board. */
+scanlatch_plan *scanlatch_board_read_file(const char *path, scanlatch_messages *messages);
+
+typedef struct scanlatch_lift scanlatch_lift;
+
+struct scanlatch_lift_options {
+	const char *cut;    /* name of the signal at whose leading edge lines are cut; NULL: the board's composite or horizontal sync */
+	bool near;          /* pin the state of every cell */
+	unsigned bank;      /* setting of the jumpers */
+};
+
+/* Lifts a plan from images that are complete; both must outlive the result. What it lays out is compared with the images' loop, and with `near`
+ * its images with theirs. NULL after adding an error: the images go through no raster, or memory is out. */
+scanlatch_lift *scanlatch_lift_images(const scanlatch_images *images, const struct scanlatch_lift_options *options,
+                                      scanlatch_messages *messages);
+void scanlatch_lift_destroy(scanlatch_lift *lift);
+
+/* True if the images have other loops too or, with `near`, rows that the plan does not give back; the messages say more. Cannot fail. */
+bool scanlatch_lift_found(const scanlatch_lift *lift);
+
+/* The plan. Owned by the lift. Cannot fail. */
+const char *scanlatch_lift_plan(const scanlatch_lift *lift);
+/* What was found, as text and as JSON (its shape: src/view/lift.h). NULL when memory is out. */
+char *scanlatch_lift_text(const scanlatch_lift *lift);
+char *scanlatch_lift_json(const scanlatch_lift *lift);
+
+/* The image of a chip in words, a line for each run of addresses whose rows follow each other alike. NULL when memory is out. The image
+ * must have been read. */
+char *scanlatch_images_chip_text(const scanlatch_images *images, size_t chip);
+/* ---- Differences ---- */
+
+typedef struct scanlatch_difference scanlatch_difference;
+
+/* Compares two plans (or sets) by meaning, and the images that were proved against them byte by byte. With both proofs of one plan, the images that
+ * were read are compared with those that were made. The names are what reports call the two, their last parts. NULL when memory is out. The proofs,
+ * with what they are of, must outlive the difference. */
+scanlatch_difference *scanlatch_compare(const char *old_name, const scanlatch_proofs *old, const char *new_name, const scanlatch_proofs *now);
+void scanlatch_difference_destroy(scanlatch_difference *difference);
+
+/* True if anything changed but words: names, notes, and how the same cells are divided into regions, lines and blocks; of a plan and images, if a
+ * must fails in the images that were read. Bytes may differ all the same: states can be allotted in many ways. Cannot fail. */
+bool scanlatch_difference_found(const scanlatch_difference *difference);
+
+/* The report for a terminal, as Markdown for a review, as JSON (shape: src/view/diff.h). NULL when memory is out. */
+char *scanlatch_difference_text(const scanlatch_difference *difference);
+char *scanlatch_difference_markdown(const scanlatch_difference *difference);
+char *scanlatch_difference_json(const scanlatch_difference *difference);
 
 /* ---- Catalogues ---- */
 

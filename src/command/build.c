@@ -25,6 +25,8 @@ static const char help[] =
 	"      --format LIST  bin, hex or bin,hex (the default)\n"
 	"      --record N     data bytes in a record of Intel HEX: 16 (the default) or 32\n"
 	"      --listing      write NAME.lst too: every row of the frame\n"
+	"      --near DIR     keep the states of the images in DIR, made before, as far as the plan allows, so that\n"
+	"                     chips whose rows do not change keep their bytes; the report counts bytes that change\n"
 	"      --unproven     write even if a proof fails; the exit code is still 1\n"
 	"      --strict       advice that fails (upset, limits, glitches, speed) counts like a must\n"
 	"      --json         one JSON document instead of text (a list of them for several plans)\n"
@@ -38,6 +40,7 @@ static const struct option long_options[] = {
 	{"format", required_argument, NULL, OPTION_FORMAT},
 	{"record", required_argument, NULL, OPTION_RECORD},
 	{"listing", no_argument, NULL, OPTION_LISTING},
+	{"near", required_argument, NULL, OPTION_NEAR},
 	{"unproven", no_argument, NULL, OPTION_UNPROVEN},
 	{"strict", no_argument, NULL, OPTION_STRICT},
 	{NULL, 0, NULL, 0},
@@ -46,6 +49,7 @@ static const struct option long_options[] = {
 struct build_options {
 	struct common_options common;
 	const char *directory;
+	const char *near;          // the folder of older images, or NULL
 	unsigned files; // SCANLATCH_FILE_BIN, SCANLATCH_FILE_HEX
 	unsigned record;
 	bool listing;
@@ -56,6 +60,7 @@ struct build_options {
 struct job {
 	scanlatch_messages *messages;
 	scanlatch_plan *plan;
+	scanlatch_images *old, *plain; // with --near: the older images, and what would be made without
 	scanlatch_images *made;    // by the planner
 	scanlatch_images *proved;  // read back from the bytes of the files
 	scanlatch_proofs *proofs;
@@ -136,13 +141,30 @@ static bool add_report_files(struct build *build, struct job *job)
 	return add_file(build, job, NULL, "lst", listing, listing != NULL ? strlen(listing) : 0, listing);
 }
 
+// Leaves the planner's images in job->made, NULL after adding messages. False when memory is out.
+static bool plan_images(const struct build *build, struct job *job)
+{
+	const char *near = build->options->near;
+	if (near == NULL) {
+		job->made = scanlatch_images_make(job->plan, job->messages);
+		return true;
+	}
+	job->old = scanlatch_images_create(job->plan);
+	if (job->old != NULL && scanlatch_images_read_folder(job->old, near, job->messages))
+		job->plain = scanlatch_images_make(job->plan, job->messages);
+	if (job->plain != NULL)
+		job->made = scanlatch_images_make_near(job->plan, job->old, near, job->messages);
+	return job->old != NULL;
+}
+
 // Makes and proves a plan's images. Returns an exit code other than EXIT_FOUND; job->failed says how the proofs went.
 static int make_images(struct build *build, struct job *job, const char *path)
 {
 	job->first_file = build->file_count;
 	progress_begin(&build->progress, "planning");
 	job->plan = scanlatch_plan_read_file(path, job->messages);
-	job->made = job->plan != NULL ? scanlatch_images_make(job->plan, job->messages) : NULL;
+	if (job->plan != NULL && !plan_images(build, job))
+		return EXIT_SYSTEM;
 	if (job->made == NULL)
 		return EXIT_BAD;
 	job->proved = scanlatch_images_create(job->plan);
@@ -219,11 +241,29 @@ static void print_outcome(const struct job *job, bool written, bool refused)
 		printf("%s: written; advice missed: %s\n", name, job->missed);
 }
 
+// Bytes that change, with --near and without.
+static void print_near(const struct build *build, const struct job *job)
+{
+	if (job->old == NULL)
+		return;
+	printf("near %s\n", build->options->near);
+	for (size_t chip = 0; chip < scanlatch_plan_chips(job->plan); chip++) {
+		const size_t changed = scanlatch_images_differing(job->old, job->made, chip), plain = scanlatch_images_differing(job->old, job->plain, chip);
+		printf("  %s: ", scanlatch_plan_chip_label(job->plan, chip));
+		if (changed == 0)
+			printf("keeps its bytes; ");
+		else
+			printf("%zu of %zu bytes change; ", changed, scanlatch_plan_chip_bytes(job->plan, chip));
+		printf("%zu without --near\n", plain);
+	}
+}
+
 static void print_text(const struct build *build, bool written, bool refused)
 {
 	for (size_t index = 0; index < build->job_count; index++) {
 		const struct job *job = &build->jobs[index];
 		printf("%s%s\n%s", index == 0 ? "" : "\n", scanlatch_plan_name(job->plan), job->report);
+		print_near(build, job);
 		for (size_t file = job->first_file; written && file < job->first_file + job->file_count; file++)
 			printf("%-5s %s/%s (%zu bytes)\n", build->files[file].kept ? "kept" : "wrote", build->options->directory,
 			       build->files[file].name, build->files[file].length);
@@ -242,6 +282,20 @@ static json_t *file_json(const struct output_file *file)
 	return object;
 }
 
+static json_t *near_json(const struct job *job)
+{
+	json_t *list = json_array();
+	for (size_t chip = 0; chip < scanlatch_plan_chips(job->plan); chip++) {
+		json_t *object = json_object();
+		json_put(&object, "label", json_string(scanlatch_plan_chip_label(job->plan, chip)));
+		json_put(&object, "bytes", json_integer((json_int_t)scanlatch_plan_chip_bytes(job->plan, chip)));
+		json_put(&object, "changed", json_integer((json_int_t)scanlatch_images_differing(job->old, job->made, chip)));
+		json_put(&object, "changed_without", json_integer((json_int_t)scanlatch_images_differing(job->old, job->plain, chip)));
+		json_append(&list, object);
+	}
+	return list;
+}
+
 static json_t *job_json(const struct build *build, const struct job *job, bool written)
 {
 	json_t *document = json_object(), *files = json_array();
@@ -252,6 +306,8 @@ static json_t *job_json(const struct build *build, const struct job *job, bool w
 	json_put(&document, "failed", json_boolean(job->failed));
 	json_put(&document, "written", json_boolean(written));
 	json_put(&document, "files", files);
+	if (job->old != NULL)
+		json_put(&document, "near", near_json(job));
 	json_put(&document, "manifest", manifest != NULL ? json_loads(manifest, 0, NULL) : NULL);
 	scanlatch_free(manifest);
 	return document;
@@ -320,6 +376,8 @@ static int build_plans(const struct build_options *options, char **paths, size_t
 		scanlatch_proofs_destroy(build.jobs[index].proofs);
 		scanlatch_images_destroy(build.jobs[index].proved);
 		scanlatch_images_destroy(build.jobs[index].made);
+		scanlatch_images_destroy(build.jobs[index].plain);
+		scanlatch_images_destroy(build.jobs[index].old);
 		scanlatch_plan_destroy(build.jobs[index].plan);
 		scanlatch_messages_destroy(build.jobs[index].messages);
 	}
@@ -365,6 +423,8 @@ static bool take_option(void *context, int option, const char *value)
 		return take_record(options, value);
 	if (option == 'o')
 		options->directory = value;
+	if (option == OPTION_NEAR)
+		options->near = value;
 	options->listing = options->listing || option == OPTION_LISTING;
 	options->unproven = options->unproven || option == OPTION_UNPROVEN;
 	return true;

@@ -9,16 +9,18 @@ const struct command commands[] = {
 	{"check", "read plans or sets, lay out their lines and report, without images", command_check},
 	{"build", "make the images of plans or sets, prove them and write them", command_build},
 	{"prove", "prove images that are there against their plan or set", command_prove},
+	{"diff", "what changed between two plans, sets, or a plan and images", command_diff},
 	{"draw", "draw a line, the frame, the tables or the colour phase of a plan", command_draw},
 	{"sheet", "write the build sheet of a plan or set, a page to print and keep at the bench", command_sheet},
 	{"fit", "search line layouts that suit a standard, and write one as a plan", command_fit},
+	{"lift", "read a plan back out of images", command_lift},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
 	{"schema", "print a JSON Schema of plans, sets, boards or reports", command_schema},
 };
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
-static const char *const later_commands[] = {"diff", "lift", "readback", "probe", "export"};
+static const char *const later_commands[] = {"readback", "probe", "export"};
 
 static void print_help(FILE *out)
 {

@@ -57,11 +57,15 @@ static void report_memory(scanlatch_messages *messages)
 	diagnose(messages->diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
 }
 
-static bool create_tables(scanlatch_images *images, struct diagnostics *diagnostics)
+// `preferences`: one for each member, or NULL.
+static bool create_tables(scanlatch_images *images, const struct preference *const *preferences, struct diagnostics *diagnostics)
 {
 	bool good = true;
 	for (size_t index = 0; index < images->plan->member_count; index++) {
-		images->members[index].table = table_create(images->plan->members[index].timeline, diagnostics);
+		if (images->plan->members[index].timeline == NULL)
+			return false;
+		images->members[index].table =
+			table_create_near(images->plan->members[index].timeline, preferences != NULL ? preferences[index] : NULL, diagnostics);
 		good = good && images->members[index].table != NULL;
 	}
 	return good;
@@ -69,12 +73,25 @@ static bool create_tables(scanlatch_images *images, struct diagnostics *diagnost
 
 scanlatch_images *scanlatch_images_make(const scanlatch_plan *plan, scanlatch_messages *messages)
 {
+	return images_make(plan, NULL, messages);
+}
+
+size_t scanlatch_images_differing(const scanlatch_images *left, const scanlatch_images *right, size_t chip)
+{
+	size_t count = 0;
+	for (size_t index = 0; index < left->images[chip].length; index++)
+		count += left->images[chip].bytes[index] != right->images[chip].bytes[index];
+	return count;
+}
+
+scanlatch_images *images_make(const scanlatch_plan *plan, const struct preference *const *preferences, scanlatch_messages *messages)
+{
 	scanlatch_images *images = scanlatch_images_create(plan);
 	if (images == NULL) {
 		report_memory(messages);
 		return NULL;
 	}
-	if (create_tables(images, messages->diagnostics) && banks_fill(images, messages))
+	if (create_tables(images, preferences, messages->diagnostics) && banks_fill(images, messages))
 		return images;
 	scanlatch_images_destroy(images);
 	return NULL;

@@ -14,7 +14,7 @@
 
 struct scanlatch_messages {
 	struct diagnostics *diagnostics;
-	struct arena *names;       // sources that messages quote: plans and the names of image files
+	struct arena *names;       // what messages quote: plans, names of image files, catalogues
 };
 
 // A plan among those of a set, or a plan alone.
@@ -26,7 +26,7 @@ struct member {
 };
 
 struct scanlatch_plan {
-	struct arena *arena;           // the catalogue and what stands here
+	struct arena *arena;           // what stands here
 	const struct source *source;   // owned by the messages that the plan was read with
 	struct plan *plan;             // the first member's: all have its chips, wiring and word
 	struct plan_set *set;          // which owns the plans; NULL for a plan alone
@@ -54,6 +54,15 @@ struct scanlatch_proofs {
 	struct proofs **proofs;    // [plan->member_count]
 };
 
+struct scanlatch_lift {
+	struct arena *arena;
+	const scanlatch_images *images;
+	struct lift *lift;
+	const char *plan;          // the text
+	const char *const *files;  // [chip_count]: names of the images' files, without folders
+	bool found;
+};
+
 // Takes the bytes of a text as a string of its own; NULL (and the text released) if it failed.
 char *take_string(struct text *text);
 
@@ -65,6 +74,9 @@ bool images_complete(const scanlatch_images *images, const char *folder, scanlat
 
 // Fills the chips from the tables of all members, each in its banks. False after reporting; then members disagree, or memory is out.
 bool banks_fill(scanlatch_images *images, scanlatch_messages *messages);
+
+// Makes images of a plan. `preferences`: for each member the states that its cells should keep; NULL: none. NULL after reporting.
+scanlatch_images *images_make(const scanlatch_plan *plan, const struct preference *const *preferences, scanlatch_messages *messages);
 
 // What messages call a file: its path, or "standard input" for "-". Cannot fail.
 const char *source_label(const char *file);
@@ -78,9 +90,12 @@ const struct source *keep_source(struct arena *arena, const char *name, const ch
 // Reads a plan's or set's file into an arena. False after reporting.
 bool read_plan_file(struct arena *arena, const char *path, char **bytes, size_t *length, scanlatch_messages *messages);
 
+// Reads a board from memory, as scanlatch_plan_read does a plan.
+scanlatch_plan *board_read_text(const char *name, const char *bytes, size_t length, scanlatch_messages *messages);
+
 // A set and the plans of its listed banks, which agree.
 struct plan_set {
-	struct arena *arena;       // the catalogue and what stands here
+	struct arena *arena;       // what stands here
 	struct set *set;
 	struct plan **plans;       // [set->bank_count]
 };

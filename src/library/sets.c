@@ -45,7 +45,8 @@ static struct plan *load_bank(struct plan_set *plans, const struct catalogue *ca
 // Every bank is read, so that all that is wrong is told.
 static bool load_banks(struct plan_set *plans, scanlatch_messages *messages)
 {
-	const struct catalogue *catalogue = catalogue_load(plans->arena, messages->diagnostics);
+	// It stays with the messages, which quote it where memory did not suffice for it.
+	const struct catalogue *catalogue = catalogue_load(messages->names, messages->diagnostics);
 	bool good = catalogue != NULL;
 	for (size_t bank = 0; catalogue != NULL && bank < plans->set->bank_count; bank++) {
 		plans->plans[bank] = load_bank(plans, catalogue, bank, messages);

@@ -20,6 +20,7 @@ struct reader {
 	bool machine_known;  // the line stage's state bits and fields are known: codes and holds can be checked
 	bool signals_known;  // every signal was read without errors: the data signals are known
 	bool words_known;    // each stage's state, kind and way to advance are known: with the signals, so is its word
+	bool board;          // what is read is a board: lines and frame may be left out and are passed over
 	const struct node *kind;       // of a line-frame machine; NULL if the plan does not say it
 	const struct set *set;         // that the plan is of; NULL if it is of none
 	size_t bank;                   // of the set's listed banks

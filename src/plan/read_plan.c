@@ -146,17 +146,47 @@ static void hint_board(struct reader *reader, const struct node *root, const str
 {
 	if (values[PLAN_LINES] == NULL && values[PLAN_FRAME] == NULL && values[PLAN_MACHINE] != NULL &&
 	    !key_is_misspelt(root, plan_keys, PLAN_KEYS, PLAN_LINES) && !key_is_misspelt(root, plan_keys, PLAN_KEYS, PLAN_FRAME))
-		diagnose_hint(reader->diagnostics, "a file without lines and frame is a board, not a plan");
+		diagnose_hint(reader->diagnostics, "a file without lines and frame is a board, not a plan; scanlatch lift reads images against it");
+}
+
+// Settles the kind of a board. Line types are only counted, should it be a plan.
+static void settle_board(struct reader *reader, const struct node *lines)
+{
+	struct plan *plan = reader->plan;
+	const bool is_plan = lines != NULL && lines->kind == NODE_MAPPING;
+	if (reader->form_known && plan->machine.form == FORM_LINE_FRAME && reader->kind == NULL && !is_plan) {
+		diagnose(reader->diagnostics, RULE_BOARD_KIND, plan->machine.place,
+		         "a board of two stages has to say how many bits its kind has, found no kind in machine");
+		diagnose_hint(reader->diagnostics, "add kind: N bits: there are no line types to count");
+	}
+	plan->line_count = is_plan ? lines->count : 0;
+	settle_kinds(reader);
+	plan->line_count = 0;
+}
+
+static void read_lines_and_frame(struct reader *reader, const struct node *lines, const struct node *frame)
+{
+	if (reader->board) {
+		settle_board(reader, lines);
+		return;
+	}
+	if (lines != NULL)
+		read_lines(reader, lines);
+	settle_kinds(reader);
+	if (frame != NULL && reader->plan->line_count > 0)
+		read_frame(reader, frame);
 }
 
 static void read_root(struct reader *reader, const struct node *root)
 {
 	struct plan *plan = reader->plan;
 	const struct node *values[PLAN_KEYS];
-	if (refuse_set(reader, root) || !read_mapping(reader, root, "a plan", plan_keys, PLAN_KEYS, values))
+	const char *what = reader->board ? "a board" : "a plan";
+	if (refuse_set(reader, root) || !read_mapping(reader, root, what, reader->board ? board_keys : plan_keys, PLAN_KEYS, values))
 		return;
-	report_elsewhere(reader, root, "a plan", set_strays, COUNT_OF(set_strays));
-	hint_board(reader, root, values);
+	report_elsewhere(reader, root, what, set_strays, COUNT_OF(set_strays));
+	if (!reader->board)
+		hint_board(reader, root, values);
 	if (values[PLAN_VERSION] != NULL)
 		read_version(reader, values[PLAN_VERSION], "scanlatch");
 	if (values[PLAN_NAME] != NULL)
@@ -169,11 +199,7 @@ static void read_root(struct reader *reader, const struct node *root)
 		read_machine(reader, values[PLAN_MACHINE]);
 	if (values[PLAN_SIGNALS] != NULL)
 		read_signals(reader, values[PLAN_SIGNALS]);
-	if (values[PLAN_LINES] != NULL)
-		read_lines(reader, values[PLAN_LINES]);
-	settle_kinds(reader);
-	if (values[PLAN_FRAME] != NULL && plan->line_count > 0)
-		read_frame(reader, values[PLAN_FRAME]);
+	read_lines_and_frame(reader, values[PLAN_LINES], values[PLAN_FRAME]);
 	if (values[PLAN_PARTS] != NULL)
 		read_own_parts(reader, values[PLAN_PARTS]);
 	if (values[PLAN_CHIPS] != NULL)
@@ -214,17 +240,17 @@ static struct plan *make_plan(const struct source *source, struct diagnostics *d
 	return plan;
 }
 
-struct plan *plan_read_for_set(const struct source *source, const struct catalogue *catalogue, const struct set *set, size_t bank,
-                               struct diagnostics *diagnostics)
+// Reads what a source holds; the reader says as what, and of which set.
+static struct plan *read_source(const struct source *source, struct reader reader)
 {
+	struct diagnostics *diagnostics = reader.diagnostics;
 	const size_t errors_before = diagnostics_error_count(diagnostics);
 	struct plan *plan = make_plan(source, diagnostics);
 	if (plan == NULL)
 		return NULL;
-	struct reader reader = {.arena = plan->arena, .plan = plan, .catalogue = catalogue, .diagnostics = diagnostics};
-	reader.set = set;
-	reader.bank = bank;
-	reader.set_bits = plan->bank_bits = set != NULL ? set->bank_bits : 0;
+	reader.arena = plan->arena;
+	reader.plan = plan;
+	reader.set_bits = plan->bank_bits = reader.set != NULL ? reader.set->bank_bits : 0;
 	const struct node *root = document_parse(plan->arena, source, diagnostics);
 	if (root != NULL)
 		read_root(&reader, root);
@@ -234,9 +260,20 @@ struct plan *plan_read_for_set(const struct source *source, const struct catalog
 	return NULL;
 }
 
+struct plan *plan_read_for_set(const struct source *source, const struct catalogue *catalogue, const struct set *set, size_t bank,
+                               struct diagnostics *diagnostics)
+{
+	return read_source(source, (struct reader){.catalogue = catalogue, .diagnostics = diagnostics, .set = set, .bank = bank});
+}
+
 struct plan *plan_read(const struct source *source, const struct catalogue *catalogue, struct diagnostics *diagnostics)
 {
 	return plan_read_for_set(source, catalogue, NULL, 0, diagnostics);
+}
+
+struct plan *board_read(const struct source *source, const struct catalogue *catalogue, struct diagnostics *diagnostics)
+{
+	return read_source(source, (struct reader){.catalogue = catalogue, .diagnostics = diagnostics, .board = true});
 }
 
 void plan_destroy(struct plan *plan)

@@ -151,7 +151,7 @@ void settle_kinds(struct reader *reader)
 	while (((size_t)1 << needed) < plan->line_count)
 		needed++;
 	plan->machine.kind_bits = needed;
-	bool known = plan->line_count > 0;
+	bool known = plan->line_count > 0 || (reader->board && reader->kind != NULL);
 	if (reader->kind != NULL)
 		known = read_kind_bits(reader, needed, &plan->machine.kind_bits) && known;
 	if (known && reader->machine_known)

@@ -137,6 +137,22 @@ static void compare_counts(const struct assignment *assignment, struct faults *f
 	}
 }
 
+static bool suits(const struct assignment *assignment, uint32_t cell, uint32_t state)
+{
+	const struct constraints *constraints = assignment->constraints;
+	return state <= constraints->state_mask && assignment->owner[state] == 0 &&
+	       ((state ^ cell_value(constraints, cell)) & cell_mask(constraints, cell)) == 0 && levels_agree(assignment, cell, state);
+}
+
+void assignment_prefer(struct assignment *assignment, bool held)
+{
+	const struct constraints *constraints = assignment->constraints;
+	for (uint32_t cell = 0; assignment->preferred != NULL && cell < constraints->period; cell++)
+		if (assignment->preferred[cell] != NO_STATE && assignment->state_of_cell[cell] == NO_STATE &&
+		    (cell_mask(constraints, cell) != 0) == held && suits(assignment, cell, assignment->preferred[cell]))
+			assignment_place(assignment, cell, assignment->preferred[cell]);
+}
+
 bool assignment_begin(struct assignment *assignment, struct faults *faults)
 {
 	const size_t before = faults->count;

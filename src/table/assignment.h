@@ -20,6 +20,7 @@ struct assignment {
 	uint32_t *state_of_cell; // [period]; NO_STATE: none yet
 	uint32_t *owner;         // [state_count]: cell + 1, or 0
 	uint32_t *remaining;     // [codes->count]: states with the code that no cell owns
+	const uint32_t *preferred; // [period]: states to be kept where that is possible, NO_STATE: none; NULL: of no cell
 	bool start_fixed;        // cell 0 has the state `start`
 	uint32_t start;
 };
@@ -31,6 +32,10 @@ bool assignment_create(struct assignment *assignment, struct arena *arena, const
 // Starts afresh: gives fixed cells and classes with a single state their states, and compares each pattern's cells with
 // its states. False with faults where that fails.
 bool assignment_begin(struct assignment *assignment, struct faults *faults);
+
+// Gives cells that have no state those that they prefer, if they are allowed and free: the held cells, or the others. What held cells are given
+// so, assignment_augment can still change. Cannot fail.
+void assignment_prefer(struct assignment *assignment, bool held);
 
 // Gives states to the held cells that have none, in quiet codes where `quiet` is not NULL. False with faults where not
 // all of them can have a state. Memory is taken from the arena.

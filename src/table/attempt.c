@@ -21,10 +21,12 @@ static bool assign(struct assignment *assignment, struct arena *arena, bool quie
 	struct quiet *quiet = NULL;
 	if (!assignment_begin(assignment, faults))
 		return false;
+	assignment_prefer(assignment, true);
 	if (quietly && (quiet = quiet_create(arena, assignment)) == NULL)
 		return faults_memory(faults);
 	if (!assignment_hold(assignment, arena, quiet, faults))
 		return false;
+	assignment_prefer(assignment, false);
 	return !quietly || walk_place(assignment, quiet, arena) || faults_memory(faults);
 }
 
@@ -207,10 +209,27 @@ static enum repair try_repairs(struct solver *solver, struct fault *shortage, st
 	return repair;
 }
 
+// Tries the codes that were there before. False if they will not do, or memory is out, which `faults` says.
+static bool try_preferred(struct solver *solver, struct faults *faults)
+{
+	const uint32_t *preferred = solver->assignment.preferred;
+	struct faults ignored = {.count = 0};
+	bool good = preferred != NULL && label_fields(solver, &ignored);
+	for (size_t index = 0; good && index < solver->automatic_count; index++)
+		good = automatic_prefer(&solver->automatic[index], preferred, solver->arena) || faults_memory(&ignored);
+	good = good && try_codes(solver, true, &ignored);
+	faults->memory_out = faults->memory_out || ignored.memory_out;
+	return good;
+}
+
 // Finds codes and states together. Faults that no codes can mend are left as they are.
 static bool try_automatic(struct solver *solver, struct faults *faults)
 {
 	struct fault shortage = fault_at(RULE_CODES_SHORT, NO_CELL);
+	if (try_preferred(solver, faults))
+		return true;
+	if (faults->memory_out)
+		return false;
 	if (!label_fields(solver, faults)) {
 		add_listed_faults(solver, faults);
 		return false;

@@ -51,6 +51,10 @@ bool automatic_create(struct arena *arena, const struct constraints *constraints
 bool automatic_label(struct automatic_field *field, const struct assignment *assignment, struct arena *arena,
                      struct faults *faults);
 
+// After automatic_label: gives values the patterns that the preferred states of the cells have had them for, as far as each pattern keeps as
+// many values as it must have. Values that cells hold stay. Memory is taken from the arena; false when it is out.
+bool automatic_prefer(struct automatic_field *field, const uint32_t *preferred, struct arena *arena);
+
 enum repair { REPAIR_DONE, REPAIR_SHORT, REPAIR_HOPELESS, REPAIR_BEYOND };
 
 // REPAIR_BEYOND is the solver's: no codes can mend the fault.

@@ -5,9 +5,9 @@
 
 #include "layout/timeline.h"
 #include "table/key_map.h"
+#include "table/table.h"
 
 #define NO_CELL UINT32_MAX
-#define NO_STATE UINT32_MAX
 #define NO_CODE UINT32_MAX
 #define NO_PATTERN KEY_ABSENT
 #define CLASS_FIXED UINT32_MAX

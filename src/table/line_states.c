@@ -19,6 +19,7 @@ struct types {
 	struct timeline timeline; // each line type of the frame once
 	uint64_t *pins;           // [period]: what its cells show
 	uint32_t *states;         // [period]: of the current attempt, with the kind
+	uint32_t *preferred;      // [period]: states to be kept where that is possible, with the kind, NO_STATE: none; NULL: of no cell
 	uint32_t *first_masks;    // [timeline.line_count]: what the plan holds in the first cells
 	uint32_t *first_values;
 	uint32_t state_mask;      // of the state, without the kind
@@ -66,6 +67,24 @@ static void lay_type(struct types *types, uint32_t line)
 	types->first_values[line] = timeline->hold_value[first];
 }
 
+// What cells of the first line of each type are to keep.
+static bool lay_preferred(struct types *types)
+{
+	const struct preference *preference = types->table->preference;
+	const struct timeline *timeline = &types->timeline;
+	if (preference == NULL)
+		return true;
+	types->preferred = arena_array(types->arena, types->table->period, sizeof *types->preferred);
+	for (uint32_t line = 0; types->preferred != NULL && line < timeline->line_count; line++) {
+		const uint32_t first = timeline->lines[line].first_cell;
+		for (uint32_t cell = 0; cell < timeline->types[timeline->lines[line].type].cells; cell++) {
+			const uint32_t state = preference->state_of_cell[line_row_cell(types->table, first + cell)];
+			types->preferred[first + cell] = state == NO_STATE ? NO_STATE : state | kind_bits_of(types, line);
+		}
+	}
+	return types->preferred != NULL;
+}
+
 // A counter needs no kinds: its states are only compared with what cells ask.
 static bool create_types(struct types *types, struct table *table, struct arena *arena)
 {
@@ -84,7 +103,7 @@ static bool create_types(struct types *types, struct table *table, struct arena 
 		types->timeline.lines[line] = (struct frame_line){.type = type, .first_cell = table->first_row[type]};
 		lay_type(types, line++);
 	}
-	return true;
+	return lay_preferred(types);
 }
 
 // Holds all first cells to one state, or as the plan has it if `state` is NO_STATE.
@@ -131,6 +150,8 @@ static bool attempt(struct types *types, uint32_t first, uint64_t *jumps, struct
 	             solver_create(&solver, arena, &constraints, types->states);
 	if (!found)
 		faults->memory_out = true;
+	else
+		solver.assignment.preferred = types->preferred;
 	found = found && attempt_start(&solver, false, 0, faults);
 	if (found && (!closing_count(&solver.assignment, arena, jumps) || !guard_lines(types, &constraints, arena)))
 		found = faults_memory(faults);
@@ -253,6 +274,21 @@ static bool report_faults(struct types *types, const struct faults *faults, stru
 	return false;
 }
 
+// The state that first cells had before, if that will do. False if not, or if memory is out, which `faults` says.
+static bool keep_first(struct types *types, const struct candidates *candidates, struct faults *faults)
+{
+	struct faults ignored = {.count = 0};
+	uint64_t jumps;
+	if (types->preferred == NULL || types->preferred[0] == NO_STATE)
+		return false;
+	const uint32_t state = types->preferred[0] & types->state_mask;
+	const bool kept = suits(types, candidates, state) && attempt(types, state, &jumps, &ignored);
+	faults->memory_out = faults->memory_out || ignored.memory_out;
+	if (kept)
+		keep(types);
+	return kept;
+}
+
 // Without a start: 0, which a cleared latch holds, where no other state is quieter; else the lowest of the quietest.
 static bool search_first(struct types *types, struct diagnostics *diagnostics)
 {
@@ -266,6 +302,8 @@ static bool search_first(struct types *types, struct diagnostics *diagnostics)
 		faults.memory_out = true;
 		return report_faults(types, &faults, diagnostics);
 	}
+	if (keep_first(types, &candidates, &faults) || faults.memory_out)
+		return !faults.memory_out || report_faults(types, &faults, diagnostics);
 	if (suits(types, &candidates, 0))
 		further = try_first(types, 0, &best, &faults);
 	// What fails with first cells free of each other fails for every state.

@@ -122,7 +122,17 @@ static bool choose_start(struct solver *solver, struct arena *arena, struct faul
 	return true;
 }
 
-bool solve_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell,
+// The start that the first cell had before, if that will do. False if not, or if memory is out, which `faults` says.
+static bool keep_start(struct solver *solver, struct faults *faults)
+{
+	const uint32_t *preferred = solver->assignment.preferred;
+	struct faults ignored = {.count = 0};
+	const bool kept = preferred != NULL && preferred[0] <= solver->constraints->state_mask && attempt_start(solver, true, preferred[0], &ignored);
+	faults->memory_out = faults->memory_out || ignored.memory_out;
+	return kept;
+}
+
+bool solve_states(const struct constraints *constraints, struct arena *arena, const uint32_t *preferred, uint32_t *state_of_cell,
                   struct faults *faults)
 {
 	const struct machine_plan *machine = &constraints->plan->machine;
@@ -136,7 +146,10 @@ bool solve_states(const struct constraints *constraints, struct arena *arena, ui
 	}
 	if (!solver_create(&solver, arena, constraints, state_of_cell))
 		return faults_memory(faults);
+	solver.assignment.preferred = preferred;
 	if (machine->has_start)
 		return attempt_start(&solver, true, machine->start, faults);
-	return choose_start(&solver, arena, faults);
+	if (keep_start(&solver, faults))
+		return true;
+	return !faults->memory_out && choose_start(&solver, arena, faults);
 }

@@ -9,7 +9,10 @@
 // (see quiet.h) as is cheap to find. The first cell gets the plan's start or else, wherever that is possible and no
 // noisier than another, state 0, which a cleared latch holds. False with faults if no assignment was found; without
 // codes: auto there is none then, with it see automatic.h and search.c. state_of_cell[period] is then unspecified.
-bool solve_states(const struct constraints *constraints, struct arena *arena, uint32_t *state_of_cell,
+//
+// preferred[period], or NULL: states that cells are to have where nothing stands against it, the first cell's before all else that is
+// said here; NO_STATE: none.
+bool solve_states(const struct constraints *constraints, struct arena *arena, const uint32_t *preferred, uint32_t *state_of_cell,
                   struct faults *faults);
 
 // Checks that everything agrees with a counter whose states state_of_cell[period] are. False with faults if not.

@@ -27,6 +27,12 @@ static bool count_period(struct table *table, const struct constraints *constrai
 	return count_states(constraints, scratch, table->state_of_cell, faults);
 }
 
+// States that cells of the table's period are to keep.
+static const uint32_t *preferred_states(const struct table *table)
+{
+	return table->preference != NULL ? table->preference->state_of_cell : NULL;
+}
+
 static bool solve_period(struct table *table, const struct timeline *folded, struct arena *scratch, struct faults *faults)
 {
 	struct constraints constraints;
@@ -34,7 +40,7 @@ static bool solve_period(struct table *table, const struct timeline *folded, str
 		return faults_memory(faults);
 	if (table->wiring.line.advance == ADVANCE_COUNT)
 		return count_period(table, &constraints, scratch, faults);
-	if (!solve_states(&constraints, scratch, table->state_of_cell, faults))
+	if (!solve_states(&constraints, scratch, preferred_states(table), table->state_of_cell, faults))
 		return false;
 	bool *used = guard_states(&constraints, scratch, table->state_of_cell);
 	if (used == NULL)
@@ -184,7 +190,7 @@ static bool fill_table(struct table *table, struct arena *scratch, struct diagno
 	return true;
 }
 
-static struct table *new_table(const struct timeline *timeline)
+static struct table *new_table(const struct timeline *timeline, const struct preference *preference)
 {
 	struct arena *arena = arena_create();
 	struct table *table = arena != NULL ? arena_alloc(arena, sizeof *table) : NULL;
@@ -194,19 +200,27 @@ static struct table *new_table(const struct timeline *timeline)
 	}
 	table->arena = arena;
 	table->timeline = timeline;
+	table->preference = preference;
 	return table;
 }
 
 struct table *table_create(const struct timeline *timeline, struct diagnostics *diagnostics)
 {
+	return table_create_near(timeline, NULL, diagnostics);
+}
+
+struct table *table_create_near(const struct timeline *timeline, const struct preference *preference, struct diagnostics *diagnostics)
+{
 	struct arena *scratch = arena_create();
-	struct table *table = scratch != NULL ? new_table(timeline) : NULL;
+	struct table *table = scratch != NULL ? new_table(timeline, preference) : NULL;
 	bool filled = false;
 	if (table == NULL)
 		report_memory(timeline->plan, diagnostics);
 	else
 		filled = fill_table(table, scratch, diagnostics);
 	arena_destroy(scratch);
+	if (table != NULL)
+		table->preference = NULL;
 	if (filled)
 		return table;
 	table_destroy(table);

@@ -399,6 +399,13 @@ static void put_miss_by(struct text *out, const struct proofs *proofs, const str
 	text_put(out, is_too_low(proofs, limit) ? " too little" : " too much");
 }
 
+void put_limit_measured(struct text *out, const struct proofs *proofs, enum limit_item item)
+{
+	put_interval_unit(out, item, proofs->limits.measurement->items[item].values);
+	text_put(out, ", allowed ");
+	put_allowed(out, limit_at(proofs, item, plan_of_proofs(proofs)->grade));
+}
+
 void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_item item)
 {
 	const struct limit *limit = limit_at(proofs, item, plan_of_proofs(proofs)->grade);

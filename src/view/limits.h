@@ -39,6 +39,9 @@ void put_limits_figures(struct text *out, const struct proofs *proofs);
 // True if a limit that binds is missed at the plan's grade. Cannot fail.
 bool limit_is_missed(const struct proofs *proofs, enum limit_item item);
 
+// Puts what was measured of a limit that was judged at the plan's grade, and what is allowed: "4.19 us, allowed 4.4 to 5 us".
+void put_limit_measured(struct text *out, const struct proofs *proofs, enum limit_item item);
+
 // Puts a missed limit, in words, without line breaks: measured, allowed, where.
 void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_item item);
 // The same: which edge to move to keep it. False, with nothing put, if no whole number of cells does.

@@ -22,7 +22,7 @@ cd "$folder" || exit 1
 touch tide.yaml tide.yml tide.txt tide.html tide.rom0.bin tide.rom0.hex old.svg 'two words.yaml'
 mkdir images
 
-same 'commands' $'build\ncheck\ndraw\nfit\nlist\nprove\nschema\nsheet' "$(offered '')"
+same 'commands' $'build\ncheck\ndiff\ndraw\nfit\nlift\nlist\nprove\nschema\nsheet' "$(offered '')"
 same 'a command begun' 'prove' "$(offered pr)"
 same 'plans and folders' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered check '')"
 same 'images too, to be proved' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yaml\ntide.yml\ntwo words.yaml' \
@@ -31,6 +31,10 @@ same 'a blank in a name' 'two words.yaml' "$(offered check tw)"
 same 'folders to write to' 'images' "$(offered build tide.yaml -o '')"
 same 'the same for the long option' 'images' "$(offered build tide.yaml --output '')"
 same 'pages to write to' $'images\ntide.html' "$(offered sheet tide.yaml -o '')"
+same 'a plan to write' $'images\ntide.yaml\ntide.yml\ntwo words.yaml' "$(offered lift tide.yaml images -o '')"
+same 'images to lift a plan out of' $'images\ntide.rom0.bin\ntide.rom0.hex\ntide.yaml\ntide.yml\ntwo words.yaml' \
+	"$(offered lift tide.yaml '')"
+same 'folders of older images' 'images' "$(offered build tide.yaml --near '')"
 same 'formats' $'bin\nbin,hex\nhex' "$(offered build --format '')"
 same 'record lengths' $'16\n32' "$(offered build --record '')"
 same 'colours' $'always\nauto\nnever' "$(offered check --color '')"
@@ -52,7 +56,7 @@ same 'every standard of the catalogue' \
 	"$("$SCANLATCH" list standards --json | sed -n 's/^      "name": "\(.*\)",$/\1/p' | sort)" "$(offered fit --standard '')"
 long_options='(^|[^-A-Za-z])--[a-z]+(-[a-z]+)*'
 page=$(sed 's/\\-/-/g; s/\\f.//g' src/command/scanlatch.1)
-for command in check build prove draw sheet fit list schema; do
+for command in check build prove diff draw sheet fit lift list schema; do
 	options=$("$SCANLATCH" "$command" --help | grep -oE -- "$long_options" | grep -oE -- '--[a-z-]+' | sort -u)
 	same "$command: completion offers the options that its help names" "$options" "$(offered "$command" --)"
 	for option in $options; do

@@ -76,6 +76,48 @@ for ((number = total - 450; number <= total; number++)); do
 	esac
 done
 holds "limits: $refusals of 450 allocations refused" test "$refusals" -gt 300
+# The same of diff, which writes nothing: its whole result, or 3 and nothing. Every ninth allocation, another ninth for each form.
+first=0
+sed 's/col }/col + 0, page2: 0 }/; s/page: 1..0/page: 1..0, page2: 2/; s/cells: 2/cells: 3/; s/name: jetty/name: pier/' plan.yaml >later.yaml
+for form in --color=never --markdown --json; do
+	"$program" diff "$form" plan.yaml later.yaml >diff.stdout
+	same "diff $form: status" 1 $?
+	LD_PRELOAD=./faults.so FAULTS_COUNT=count "$program" diff "$form" plan.yaml later.yaml >stdout
+	total=$(cat count)
+	refusals=0
+	first=$((first + 1))
+	for ((number = first; number <= total; number += 9)); do
+		LD_PRELOAD=./faults.so FAULTS_ALLOCATION=$number "$program" diff "$form" plan.yaml later.yaml >stdout 2>stderr
+		case $? in
+		1) cmp -s diff.stdout stdout || fail "diff $form, allocation $number: status 1, but another result" ;;
+		3) [ ! -s stdout ] && [ -s stderr ] && refusals=$((refusals + 1)) || fail "diff $form, allocation $number: status 3, but a result or no word" ;;
+		*) fail "diff $form, allocation $number: status $?" "$(head -n 3 stderr)" ;;
+		esac
+	done
+	holds "diff $form: $refusals of $total allocations refused" test "$refusals" -gt 500 -a "$cases_failed" -eq 0
+done
+
+# The same of build --near: every eleventh allocation.
+mkdir images
+cp whole/jetty.rom0.bin whole/jetty.manifest.json images
+sed 's/cells: 2/cells: 3/' plan.yaml >longer.yaml
+"$program" build longer.yaml --near images --format bin -o longer >near.stdout
+same 'near: status' 0 $?
+sed -i 's# longer/# out/#' near.stdout
+LD_PRELOAD=./faults.so FAULTS_COUNT=count "$program" build longer.yaml --near images --format bin -o out >/dev/null
+total=$(cat count)
+refusals=0
+for ((number = 1; number <= total; number += 11)); do
+	rm -rf out
+	LD_PRELOAD=./faults.so FAULTS_ALLOCATION=$number "$program" build longer.yaml --near images --format bin -o out >stdout 2>stderr
+	status=$?
+	[ $status -ne 3 ] || refusals=$((refusals + 1))
+	case $status in
+	0) diff -r longer out >/dev/null && cmp -s near.stdout stdout || fail "near, allocation $number: status 0, but another result" ;;
+	*) judge $status "$number of near" ;;
+	esac
+done
+holds "near: $refusals of $total allocations refused" test "$refusals" -gt 200 -a "$cases_failed" -eq 0
 
 # A signal that comes while the first file is flushed ends the program only after all files are whole.
 for signal in INT TERM HUP QUIT; do

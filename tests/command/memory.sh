@@ -65,4 +65,5 @@ refused_below sheet sheet "$plan" -o "$work/out/sheet.html"
 refused_below prove prove --json "$plan" "$work/images"
 refused_below fit fit --standard composite-625 --columns 80
 refused_below schema schema
+refused_below lift lift --near "$plan" "$work/images" -o "$work/out/lifted.yaml"
 finish

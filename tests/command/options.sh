@@ -48,15 +48,15 @@ is_json() {
 ends 'no command' 2
 same 'no command: help on standard error' 'Usage: scanlatch COMMAND [options] ARGUMENTS' "$(head -n 1 stderr)"
 same 'no command: nothing on standard output' '' "$stdout"
-refuses 'unknown command' 'scanlatch: there is no command "frobnicate"; the commands are check, build, prove, draw, sheet, fit, list, schema' \
+refuses 'unknown command' 'scanlatch: there is no command "frobnicate"; the commands are check, build, prove, diff, draw, sheet, fit, lift, list, schema' \
 	frobnicate good.yaml
 refuses 'option before a command' 'scanlatch: unknown option "--json" before a command' --json check good.yaml
-for command in diff lift readback probe export; do
+for command in readback probe export; do
 	ends "later command $command" 2 $command good.yaml
 	same "later command $command: says so" "scanlatch: the command \"$command\" is not carried out by this version yet" \
 		"$stderr"
 done
-for command in check build prove draw sheet fit list schema; do
+for command in check build prove diff draw sheet fit list schema; do
 	refuses "$command: unknown option" "scanlatch $command: unrecognized option '--frobnicate'" $command --frobnicate
 	refuses "$command: unknown short option" "scanlatch $command: invalid option -- 'x'" $command -x
 	refuses "$command: bad colour" "scanlatch $command: --color: wanted auto, always or never, found \"blue\"" \
@@ -97,7 +97,7 @@ version=$("$SCANLATCH" --version)
 holds 'version has its form' grep -Eqx 'scanlatch [0-9]+\.[0-9]+\.[0-9]+' <<<"$version"
 same 'short version' "$version" "$("$SCANLATCH" -V)"
 same 'short help' "$("$SCANLATCH" --help)" "$("$SCANLATCH" -h)"
-for command in check build prove draw sheet fit list schema; do
+for command in check build prove diff draw sheet fit list schema; do
 	holds "help names $command" grep -q "^  $command " <<<"$("$SCANLATCH" --help)"
 	ends "$command --help" 0 $command --help
 	same "$command --help: usage" "Usage: scanlatch $command [options]" \

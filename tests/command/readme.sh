@@ -71,7 +71,14 @@ holds "fit finds what the README shows" compare 10
 holds "fit writes as the README shows" compare 11
 holds "the plan that fit wrote proves" eval "scanlatch build board.yaml -o board"
 holds "a drawing looks as the README shows" compare 12
-same "the README shows twelve commands" "$(block 13)" ""
+holds "the README makes a board" eval "$(shell_block 8)"
+holds "lift looks as the README shows" compare 13
+holds "the lifted plan builds" scanlatch build lifted.yaml -o again
+holds "the README moves a burst" eval "$(shell_block 9)"
+holds "diff shows what the README shows" compare 14
+holds "the README builds what was burned" eval "$(shell_block 10)"
+holds "build --near shows what the README shows" compare 15
+same "the README shows fifteen commands" "$(block 16)" ""
 
 # A block of YAML that is a plan's or a set's own text: each of its lines stands there, but for what a comment says.
 yaml_block() { awk -v wanted="$1" '/^```/ { if (inside) inside = 0; else if ($0 == "```yaml") inside = ++count == wanted; next } inside' "$readme"; }

@@ -24,14 +24,15 @@ class Languages:
     """Judges plans and sets, told apart as the reader does."""
 
     def __init__(self):
-        self.validators = {name: validator(name) for name in ("plan", "set")}
+        self.validators = {name: validator(name) for name in ("plan", "set", "board")}
 
     def language(self, value):
         is_set = isinstance(value, dict) and "scanlatch-set" in value and "scanlatch" not in value
         return self.validators["set" if is_set else "plan"]
 
-    def accepts(self, value):
-        return self.language(value).is_valid(value)
+    def accepts(self, value, as_board=False):
+        language = self.validators["board"] if as_board else self.language(value)
+        return language.is_valid(value)
 
     def faults(self, value):
         return [f"{'/'.join(map(str, fault.absolute_path))}: {fault.message}" for fault in self.language(value).iter_errors(value)]

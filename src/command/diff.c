@@ -1,0 +1,221 @@
+#include <getopt.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+
+#include "command/command.h"
+
+static const char help[] =
+	"Usage: scanlatch diff [options] OLD NEW\n"
+	"       scanlatch diff --git PATH OLD HEX MODE NEW HEX MODE\n"
+	"\n"
+	"Says what changed between two plans or two sets: first what matters at the bench (whether the frame\n"
+	"closes and colour is in step, limits kept or missed now, for each chip whether it must be burned\n"
+	"again), then the changes: clock, signals, edges and regions of each line type, blocks of the frame,\n"
+	"machine, wiring. Plans are compared by what they mean: one that is only written otherwise has the same\n"
+	"timeline. One of OLD and NEW may be a folder of images of the other, as build writes them, or - for\n"
+	"standard input.\n"
+	"\n"
+	"Exit code 0: the same, but for words such as names and notes; images do what the plan says. 1: they\n"
+	"differ, or the images do not. With --git it is 0 in both cases.\n"
+	"\n"
+	"Options:\n"
+	"      --git          take the arguments of git's external diff: see gitattributes(5)\n"
+	"      --json         one JSON document instead of text\n"
+	"      --markdown     tables for a review instead of text\n"
+	"      --color WHEN   auto, always or never: of messages\n"
+	"  -h, --help         print this help\n"
+	"  -V, --version      print the version\n";
+
+static const struct option long_options[] = {
+	COMMON_LONG_OPTIONS,
+	{"git", no_argument, NULL, OPTION_GIT},
+	{"markdown", no_argument, NULL, OPTION_MARKDOWN},
+	{NULL, 0, NULL, 0},
+};
+
+struct diff_options {
+	struct common_options common;
+	bool git;
+	bool markdown;
+};
+
+static bool take(void *options, int option, const char *value)
+{
+	struct diff_options *diff = options;
+	(void)value;
+	diff->git = diff->git || option == OPTION_GIT;
+	diff->markdown = diff->markdown || option == OPTION_MARKDOWN;
+	return true;
+}
+
+static const struct option_table table = {"diff", help, "hV", long_options, take};
+
+// A plan or set with images that were proved: its own, or those of a folder.
+struct side {
+	scanlatch_plan *plan;   // NULL for a folder of the other's images
+	scanlatch_images *images;
+	scanlatch_proofs *proofs;
+};
+
+static void side_release(struct side *side)
+{
+	scanlatch_proofs_destroy(side->proofs);
+	scanlatch_images_destroy(side->images);
+	scanlatch_plan_destroy(side->plan);
+}
+
+// Proves what images there are. False when memory is out.
+static bool side_prove(struct side *side)
+{
+	side->proofs = side->images != NULL ? scanlatch_prove(side->images) : NULL;
+	return side->images == NULL || side->proofs != NULL;
+}
+
+static bool side_read(struct side *side, const char *path, const char *name, scanlatch_messages *messages)
+{
+	side->plan = scanlatch_plan_read_file_as(path, name, messages);
+	side->images = side->plan != NULL ? scanlatch_images_make(side->plan, messages) : NULL;
+	return side_prove(side);
+}
+
+// The images of a folder, of the other side's plan.
+static bool side_read_folder(struct side *side, const struct side *other, const char *path, scanlatch_messages *messages)
+{
+	if (other->images == NULL)
+		return true;
+	side->images = scanlatch_images_create(other->plan);
+	if (side->images == NULL)
+		return false;
+	scanlatch_images_begin_as(side->images, other->images);
+	if (scanlatch_images_read_folder(side->images, path, messages))
+		return side_prove(side);
+	scanlatch_images_destroy(side->images);
+	side->images = NULL;
+	return true;
+}
+
+static char *report(const scanlatch_difference *difference, const struct diff_options *options)
+{
+	if (options->common.json)
+		return scanlatch_difference_json(difference);
+	return options->markdown ? scanlatch_difference_markdown(difference) : scanlatch_difference_text(difference);
+}
+
+static int compare(const char *const names[2], const struct side *sides, const struct diff_options *options)
+{
+	scanlatch_difference *difference = scanlatch_compare(names[0], sides[0].proofs, names[1], sides[1].proofs);
+	if (difference == NULL)
+		return memory_error();
+	int code = print_string(report(difference, options));
+	if (code == EXIT_GOOD && scanlatch_difference_found(difference))
+		code = EXIT_FOUND;
+	scanlatch_difference_destroy(difference);
+	return code;
+}
+
+// Reads both sides and compares them. `names` are what reports call the two, `sources` what messages do.
+static int diff(const char *const paths[2], const char *const names[2], const char *const sources[2], const struct diff_options *options,
+                scanlatch_messages *messages)
+{
+	struct side sides[2] = {{NULL, NULL, NULL}, {NULL, NULL, NULL}};
+	struct progress progress = PROGRESS_NONE;
+	progress_begin(&progress, "comparing");
+	const int folder = is_folder(paths[0]) ? 0 : is_folder(paths[1]) ? 1 : -1;
+	bool good = true;
+	for (int index = 0; index < 2; index++)
+		good = good && (index == folder || side_read(&sides[index], paths[index], sources[index], messages));
+	if (folder >= 0)
+		good = good && side_read_folder(&sides[folder], &sides[1 - folder], paths[folder], messages);
+	progress_end(&progress);
+	int code = print_messages(messages, options->common.colour);
+	if (!good)
+		code = worse(code, memory_error());
+	if (code == EXIT_GOOD)
+		code = compare(names, sides, options);
+	// What was read from the folder refers to the other side's plan.
+	side_release(&sides[folder >= 0 ? folder : 0]);
+	side_release(&sides[folder >= 0 ? 1 - folder : 1]);
+	return code;
+}
+
+// What git calls with: PATH OLD HEX MODE NEW HEX MODE, and of a renamed file the new path and how alike the two are.
+enum { GIT_PATH, GIT_OLD, GIT_OLD_HEX, GIT_OLD_MODE, GIT_NEW, GIT_NEW_HEX, GIT_NEW_MODE, GIT_COUNT, GIT_RENAMED = 9 };
+
+static void print_git_heading(char **arguments, const char *name)
+{
+	const bool moded = strcmp(arguments[GIT_OLD_MODE], ".") != 0 && strcmp(arguments[GIT_NEW_MODE], ".") != 0;
+	printf("scanlatch diff %s", arguments[GIT_PATH]);
+	if (strcmp(name, arguments[GIT_PATH]) != 0)
+		printf(" to %s", name);
+	if (moded && strcmp(arguments[GIT_OLD_MODE], arguments[GIT_NEW_MODE]) != 0)
+		printf(", mode %s, was %s", arguments[GIT_NEW_MODE], arguments[GIT_OLD_MODE]);
+	puts("");
+	fflush(stdout); // messages follow on standard error
+}
+
+static int diff_git_pair(char **arguments, const char *name, const struct diff_options *options, scanlatch_messages *messages)
+{
+	const char *const paths[2] = {arguments[GIT_OLD], arguments[GIT_NEW]}, *const names[2] = {arguments[GIT_PATH], name};
+	char *old_source = malloc(strlen(arguments[GIT_PATH]) + sizeof " (old)");
+	if (old_source == NULL)
+		return memory_error();
+	strcat(strcpy(old_source, arguments[GIT_PATH]), " (old)");
+	const char *const sources[2] = {old_source, name};
+	const int code = diff(paths, names, sources, options, messages);
+	free(old_source);
+	if (code == EXIT_BAD)
+		puts("not compared, the messages say why; \"git diff --no-ext-diff\" shows the text");
+	return code == EXIT_SYSTEM ? EXIT_SYSTEM : EXIT_GOOD;
+}
+
+// git takes an exit code other than 0 for a failure.
+static int diff_git(char **arguments, int count, const struct diff_options *options, scanlatch_messages *messages)
+{
+	if (count == 1) {
+		printf("scanlatch diff %s\nnot merged yet\n", arguments[GIT_PATH]);
+		return EXIT_GOOD;
+	}
+	if (count != GIT_COUNT && count != GIT_RENAMED)
+		return usage_error("diff", "--git: wanted the seven arguments of git's external diff, found %d", count);
+	const char *name = count == GIT_RENAMED ? arguments[GIT_COUNT] : arguments[GIT_PATH];
+	const bool added = strcmp(arguments[GIT_OLD], "/dev/null") == 0, removed = strcmp(arguments[GIT_NEW], "/dev/null") == 0;
+	print_git_heading(arguments, name);
+	if (!added && !removed)
+		return diff_git_pair(arguments, name, options, messages);
+	puts(added ? "the file is new" : "the file is gone");
+	return EXIT_GOOD;
+}
+
+static const char *label_of(const char *path)
+{
+	return strcmp(path, "-") == 0 ? "standard input" : path;
+}
+
+static int diff_two(char **arguments, int count, const struct diff_options *options, scanlatch_messages *messages)
+{
+	if (count != 2)
+		return usage_error("diff", "wanted OLD and NEW, found %d argument%s", count, count == 1 ? "" : "s");
+	const char *const paths[2] = {arguments[0], arguments[1]}, *const labels[2] = {label_of(arguments[0]), label_of(arguments[1])};
+	if (is_folder(paths[0]) && is_folder(paths[1]))
+		return usage_error("diff", "wanted at least one plan or set, found two folders");
+	if (strcmp(paths[0], "-") == 0 && strcmp(paths[1], "-") == 0)
+		return usage_error("diff", "only one of OLD and NEW can be standard input");
+	return diff(paths, labels, labels, options, messages);
+}
+
+int command_diff(int argument_count, char **arguments)
+{
+	struct diff_options options = {.git = false};
+	const int parsed = parse_options(&table, argument_count, arguments, &options);
+	if (parsed != PARSED)
+		return parsed;
+	if (options.common.json + options.markdown + options.git > 1)
+		return usage_error("diff", "wanted at most one of --git, --json and --markdown");
+	scanlatch_messages *messages = scanlatch_messages_create();
+	if (messages == NULL)
+		return memory_error();
+	const int code = (options.git ? diff_git : diff_two)(arguments + optind, argument_count - optind, &options, messages);
+	scanlatch_messages_destroy(messages);
+	return code;
+}

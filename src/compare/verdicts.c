@@ -1,0 +1,144 @@
+// What the machine does, by the proofs that need no images: the frame, colour, speed, limits.
+#include <inttypes.h>
+#include <string.h>
+
+#include "base/arena.h"
+#include "compare/parts.h"
+#include "view/figures.h"
+#include "view/limits.h"
+
+#define MOST_FACTS 4
+
+void add_fact(struct comparing *comparing, const char *what, struct text *old, struct text *now)
+{
+	const char *left = keep_text(comparing, old), *right = keep_text(comparing, now);
+	if (comparing->failed || (left[0] == '\0' && right[0] == '\0'))
+		return;
+	comparing->facts[comparing->fact_count++] = (struct fact){what, left[0] != '\0' ? left : "nothing", right[0] != '\0' ? right : "nothing",
+	                                                          strcmp(left, right) == 0};
+}
+
+static void put_frame(struct text *out, const struct timeline *timeline)
+{
+	struct fraction seconds, rate;
+	text_put_count(out, timeline->line_count, "line", "lines");
+	text_put(out, ", ");
+	text_put_count(out, timeline->cell_count, "cell", "cells");
+	text_put(out, ", ");
+	text_put_count(out, (uint64_t)timeline->tick_count, "tick", "ticks");
+	if (seconds_of_ticks(&timeline->plan->clock, timeline->tick_count, &seconds) && fraction_divide(fraction_whole(1), seconds, &rate)) {
+		text_put(out, ", ");
+		text_put_rounded(out, rate, 3);
+		text_put(out, " Hz");
+	}
+}
+
+static void put_colour(struct text *out, const struct proofs *proofs)
+{
+	const struct colour_result *colour = &proofs->colour;
+	const enum verdict verdict = proofs->proof[PROOF_COLOUR].verdict;
+	if (!proofs->timeline->plan->clock.has_subcarrier)
+		return;
+	text_put(out, verdict == VERDICT_FAIL ? "NOT in step as asked" : verdict == VERDICT_PASS ? "in step as asked" : "no phase is asked");
+	if (colour->cycles_per_line.numerator != 0) {
+		text_put(out, ", ");
+		text_put_exact(out, colour->cycles_per_line);
+		text_put(out, colour->uniform ? " cycles a line" : " cycles in the first line");
+	}
+	if (!colour->repeats_known)
+		return;
+	text_put(out, ", repeats after ");
+	text_put_count(out, (uint64_t)colour->repeats_lines, "line", "lines");
+	text_put(out, " and ");
+	text_put_count(out, (uint64_t)colour->repeats_frames, "frame", "frames");
+}
+
+static void put_speed(struct text *out, const struct proofs *proofs)
+{
+	const struct speed_result *speed = &proofs->speed;
+	struct fraction slack = speed->slack_s;
+	if (proofs->proof[PROOF_SPEED].verdict == VERDICT_ABSENT)
+		return;
+	const bool fails = proofs->proof[PROOF_SPEED].verdict == VERDICT_FAIL;
+	slack.numerator = slack.numerator < 0 ? -slack.numerator : slack.numerator;
+	text_put(out, fails ? "TOO SLOW by " : "in time, ");
+	text_put_time_in(out, slack, UNIT_NANOSECONDS);
+	text_put(out, fails ? "" : " to spare");
+}
+
+static void put_limits(struct text *out, const struct proofs *proofs)
+{
+	if (proofs->timeline->plan->standard != NULL)
+		put_limits_figures(out, proofs);
+}
+
+static void compare_facts(struct comparing *comparing, const struct proofs *old, const struct proofs *now)
+{
+	static const struct {
+		const char *what;
+		void (*put)(struct text *out, const struct proofs *proofs);
+	} kinds[] = {{"colour", put_colour}, {"speed of the chips", put_speed}, {"limits", put_limits}};
+	for (size_t kind = 0; kind < sizeof kinds / sizeof *kinds; kind++) {
+		struct text left = {0}, right = {0};
+		kinds[kind].put(&left, old);
+		kinds[kind].put(&right, now);
+		add_fact(comparing, kinds[kind].what, &left, &right);
+	}
+}
+
+// Limits one by one, where the verdict changed.
+
+enum limit_state { LIMIT_NOT_JUDGED, LIMIT_KEPT, LIMIT_MISSED };
+
+static enum limit_state limit_state(const struct proofs *proofs, enum limit_item item)
+{
+	const struct plan *plan = proofs->timeline->plan;
+	if (plan->standard == NULL)
+		return LIMIT_NOT_JUDGED;
+	const struct limit_verdict *verdict = &proofs->limits.rows[item].grades[plan->grade];
+	return !verdict->known || !verdict->judgement.binds ? LIMIT_NOT_JUDGED : verdict->judgement.kept ? LIMIT_KEPT : LIMIT_MISSED;
+}
+
+static const char *limit_words(struct comparing *comparing, const struct proofs *proofs, enum limit_item item)
+{
+	static const char *const words[] = {[LIMIT_NOT_JUDGED] = "not judged", [LIMIT_KEPT] = "kept", [LIMIT_MISSED] = "MISSED"};
+	const enum limit_state state = limit_state(proofs, item);
+	struct text text = {0};
+	text_put(&text, words[state]);
+	if (state != LIMIT_NOT_JUDGED) {
+		text_put(&text, " (");
+		put_limit_measured(&text, proofs, item);
+		text_put(&text, ")");
+	}
+	return keep_text(comparing, &text);
+}
+
+static void compare_limits(struct comparing *comparing, const struct proofs *old, const struct proofs *now)
+{
+	for (unsigned index = 0; index < ITEM_COUNT; index++) {
+		const enum limit_item item = (enum limit_item)index;
+		if (limit_state(old, item) == limit_state(now, item))
+			continue;
+		add_change(comparing, (struct change){.section = CHANGE_LIMITS, .kind = limit_state(now, item) == LIMIT_MISSED ? "missed" :
+		                                      limit_state(now, item) == LIMIT_KEPT ? "kept" : "not-judged",
+		                                      .what = limit_item_facts(item)->name, .old = limit_words(comparing, old, item),
+		                                      .now = limit_words(comparing, now, item)});
+	}
+}
+
+void compare_verdicts(struct comparing *comparing)
+{
+	struct proofs *old = proofs_of_plan(comparing->old_timeline), *now = proofs_of_plan(comparing->now_timeline);
+	struct text left = {0}, right = {0};
+	comparing->facts = arena_array(comparing->arena, MOST_FACTS, sizeof *comparing->facts);
+	comparing->failed = comparing->failed || old == NULL || now == NULL || comparing->facts == NULL;
+	put_frame(&left, comparing->old_timeline);
+	put_frame(&right, comparing->now_timeline);
+	add_fact(comparing, "frame", &left, &right);
+	if (!comparing->failed) {
+		compare_facts(comparing, old, now);
+		compare_limits(comparing, old, now);
+	}
+	proofs_destroy(old);
+	proofs_destroy(now);
+}

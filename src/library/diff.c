@@ -1,0 +1,247 @@
+#include <stdlib.h>
+#include <string.h>
+
+#include "base/arena.h"
+#include "catalogue/catalogue.h"
+#include "library/library.h"
+#include "plan/read.h"
+#include "view/diff.h"
+#include "view/figures.h"
+
+struct scanlatch_difference {
+	struct arena *arena;
+	struct difference difference;
+};
+
+// A side of a comparison.
+struct side {
+	const scanlatch_plan *plan;
+	const scanlatch_images *images;
+	const scanlatch_proofs *proofs;
+};
+
+// The member of a plan or set that a bank shows; a plan alone shows in every bank.
+static size_t member_of(const scanlatch_plan *plan, unsigned bank)
+{
+	return plan->set != NULL ? set_bank_shown(plan->set->set, bank) : 0;
+}
+
+static unsigned banks_of(const struct side *old, const struct side *now)
+{
+	const unsigned before = old->plan->set != NULL ? 1u << old->plan->plan->bank_bits : 1;
+	const unsigned after = now->plan->set != NULL ? 1u << now->plan->plan->bank_bits : 1;
+	return before > after ? before : after;
+}
+
+// The member of a bank, or SIZE_MAX where the set has fewer banks.
+static size_t shown_in(const struct side *side, unsigned bank)
+{
+	return side->plan->set != NULL && bank >= 1u << side->plan->plan->bank_bits ? SIZE_MAX : member_of(side->plan, bank);
+}
+
+// The names of proofs that fail, of musts or of advice, or NULL when memory is out.
+static const char *failed_proofs(struct arena *arena, const struct side *side, size_t member, bool musts)
+{
+	struct text names = {0};
+	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
+		if (proof_is_must(kind) == musts && side->proofs->proofs[member]->proof[kind].verdict == VERDICT_FAIL)
+			text_printf(&names, "%s%s", names.length > 0 ? ", " : "", proof_name(kind));
+	const char *kept = names.failed ? NULL : arena_copy(arena, text_string(&names), names.length);
+	text_release(&names);
+	return kept;
+}
+
+static bool name_failures(struct arena *arena, const struct side *old, size_t before, const struct side *now, size_t after,
+                          struct plan_difference *plan)
+{
+	plan->old_musts = failed_proofs(arena, old, before, true);
+	plan->now_musts = failed_proofs(arena, now, after, true);
+	plan->old_advice = failed_proofs(arena, old, before, false);
+	plan->now_advice = failed_proofs(arena, now, after, false);
+	return plan->old_musts != NULL && plan->now_musts != NULL && plan->old_advice != NULL && plan->now_advice != NULL;
+}
+
+// All banks that show the same two members as the first.
+static bool list_banks(struct arena *arena, const struct side *old, const struct side *now, unsigned first, struct plan_difference *plan)
+{
+	uint32_t *banks = arena_array(arena, banks_of(old, now), sizeof *banks);
+	for (unsigned bank = first; banks != NULL && bank < banks_of(old, now); bank++)
+		if (shown_in(old, bank) == shown_in(old, first) && shown_in(now, bank) == shown_in(now, first))
+			banks[plan->bank_count++] = bank;
+	plan->banks = banks;
+	return banks != NULL;
+}
+
+static bool is_told(const struct side *old, const struct side *now, unsigned bank)
+{
+	for (unsigned before = 0; before < bank; before++)
+		if (shown_in(old, before) == shown_in(old, bank) && shown_in(now, before) == shown_in(now, bank))
+			return true;
+	return false;
+}
+
+static bool compare_members(struct arena *arena, const struct side *old, const struct side *now, unsigned bank, struct plan_difference *plan)
+{
+	const size_t before = shown_in(old, bank), after = shown_in(now, bank);
+	*plan = (struct plan_difference){.banks = NULL};
+	if ((old->plan->set != NULL || now->plan->set != NULL) && !list_banks(arena, old, now, bank, plan))
+		return false;
+	if (before == SIZE_MAX || after == SIZE_MAX) {
+		plan->only = before == SIZE_MAX ? "new" : "old";
+		return true;
+	}
+	plan->comparison = comparison_create(old->plan->members[before].timeline, now->plan->members[after].timeline);
+	if (plan->comparison == NULL || !name_failures(arena, old, before, now, after, plan))
+		return false;
+	if (old->plan == now->plan) {
+		const bool old_was_read = old->images->members[before].table == NULL;
+		plan->images = (old_was_read ? old : now)->proofs->proofs[after];
+		plan->images_musts = old_was_read ? plan->old_musts : plan->now_musts;
+	}
+	return true;
+}
+
+static bool compare_plans(struct scanlatch_difference *result, const struct side *old, const struct side *now)
+{
+	struct plan_difference *plans = arena_array(result->arena, banks_of(old, now), sizeof *plans);
+	if (plans == NULL)
+		return false;
+	result->difference.plans = plans;
+	for (unsigned bank = 0; bank < banks_of(old, now); bank++)
+		if (!is_told(old, now, bank) && !compare_members(result->arena, old, now, bank, &plans[result->difference.plan_count++]))
+			return false;
+	return true;
+}
+
+static void compare_bytes(const struct image *old, const struct image *now, struct chip_difference *chip)
+{
+	chip->fate = CHIP_STAYS;
+	for (size_t index = 0; index < now->length; index++) {
+		if (old->bytes[index] == now->bytes[index])
+			continue;
+		if (chip->differing++ == 0)
+			chip->first = index;
+		chip->fate = CHIP_BURN;
+	}
+}
+
+// What a chip was; the chips of all plans of a set are the same.
+static size_t old_chip(const struct difference *difference, size_t chip)
+{
+	return difference->plans[0].comparison->old_chip_of[chip];
+}
+
+static struct chip_difference compare_chip(const struct difference *difference, const struct side *old, const struct side *now, size_t index)
+{
+	const struct chip *chip = &now->plan->plan->chips[index];
+	const size_t before = old_chip(difference, index);
+	struct chip_difference result = {.label = chip->label, .bytes = now->images->images[index].length, .fate = CHIP_NEW};
+	if (before == SIZE_MAX)
+		return result;
+	if (strcmp(old->plan->plan->chips[before].label, chip->label) != 0)
+		result.old_label = old->plan->plan->chips[before].label;
+	if (old->images->images[before].length != result.bytes)
+		result.fate = CHIP_OTHER_SIZE;
+	else
+		compare_bytes(&old->images->images[before], &now->images->images[index], &result);
+	return result;
+}
+
+static bool is_gone(const struct difference *difference, const struct side *now, size_t old)
+{
+	for (size_t chip = 0; chip < now->plan->plan->chip_count; chip++)
+		if (old_chip(difference, chip) == old)
+			return false;
+	return true;
+}
+
+// Where the machine that is meant is the same, chips with other bytes have it in another allotment of states: they do.
+static void spare_chips(const struct difference *difference, struct chip_difference *chips)
+{
+	for (size_t index = 0; index < difference->chip_count; index++)
+		if (chips[index].fate != CHIP_STAYS && chips[index].fate != CHIP_BURN)
+			return;
+	for (size_t index = 0; index < difference->chip_count && !difference_found(difference); index++)
+		if (chips[index].fate == CHIP_BURN)
+			chips[index].fate = CHIP_OTHER_BYTES;
+}
+
+static bool compare_chips(struct scanlatch_difference *result, const struct side *old, const struct side *now)
+{
+	const size_t before = old->plan->plan->chip_count, after = now->plan->plan->chip_count;
+	struct chip_difference *chips = arena_array(result->arena, before + after, sizeof *chips);
+	struct difference *difference = &result->difference;
+	if (chips == NULL)
+		return false;
+	difference->chips = chips;
+	for (size_t index = 0; index < after; index++)
+		chips[difference->chip_count++] = compare_chip(difference, old, now, index);
+	for (size_t index = 0; index < before; index++)
+		if (is_gone(difference, now, index))
+			chips[difference->chip_count++] = (struct chip_difference){
+				.label = old->plan->plan->chips[index].label, .fate = CHIP_GONE, .bytes = old->images->images[index].length};
+	spare_chips(difference, chips);
+	return true;
+}
+
+static bool name_sides(struct scanlatch_difference *result, const char *old_name, const char *now_name)
+{
+	result->difference.old_name = printable_base_name(result->arena, old_name);
+	result->difference.now_name = printable_base_name(result->arena, now_name);
+	return result->difference.old_name != NULL && result->difference.now_name != NULL;
+}
+
+static bool compare_sides(struct scanlatch_difference *result, const struct side *old, const struct side *now)
+{
+	result->difference.alone = old->plan == now->plan;
+	return compare_plans(result, old, now) && compare_chips(result, old, now);
+}
+
+scanlatch_difference *scanlatch_compare(const char *old_name, const scanlatch_proofs *old, const char *new_name, const scanlatch_proofs *now)
+{
+	const struct side before = {old->images->plan, old->images, old}, after = {now->images->plan, now->images, now};
+	struct arena *arena = arena_create();
+	scanlatch_difference *result = arena != NULL ? arena_alloc(arena, sizeof *result) : NULL;
+	if (result == NULL) {
+		arena_destroy(arena);
+		return NULL;
+	}
+	result->arena = arena;
+	if (name_sides(result, old_name, new_name) && compare_sides(result, &before, &after))
+		return result;
+	scanlatch_difference_destroy(result);
+	return NULL;
+}
+
+void scanlatch_difference_destroy(scanlatch_difference *difference)
+{
+	if (difference == NULL)
+		return;
+	for (size_t index = 0; index < difference->difference.plan_count; index++)
+		comparison_destroy(difference->difference.plans[index].comparison);
+	arena_destroy(difference->arena);
+}
+
+bool scanlatch_difference_found(const scanlatch_difference *difference)
+{
+	return difference_found(&difference->difference);
+}
+
+char *scanlatch_difference_text(const scanlatch_difference *difference)
+{
+	struct text text = {0};
+	view_difference(&text, &difference->difference);
+	return take_string(&text);
+}
+
+char *scanlatch_difference_markdown(const scanlatch_difference *difference)
+{
+	struct text text = {0};
+	view_difference_markdown(&text, &difference->difference);
+	return take_string(&text);
+}
+
+char *scanlatch_difference_json(const scanlatch_difference *difference)
+{
+	return take_json(view_difference_json(&difference->difference));
+}

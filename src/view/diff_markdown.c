@@ -1,0 +1,141 @@
+// A comparison as Markdown, for a review: tables that also read well as plain text.
+#include <string.h>
+
+#include "base/excerpt.h"
+#include "base/text.h"
+#include "view/diff.h"
+
+// Nothing that a plan says can end a cell or begin markup.
+static void put_escaped(struct text *out, const char *words)
+{
+	static const char marks[] = "\\`*_{}[]<>#|~&!";
+	for (; *words != '\0'; words++) {
+		if (strchr(marks, *words) != NULL)
+			text_put(out, "\\");
+		text_put_bytes(out, words, 1);
+	}
+}
+
+// Words are made first, and escaped when they are whole.
+struct page {
+	struct text *out;
+	struct text words;
+};
+
+static void end_words(struct page *page, const char *after)
+{
+	struct text printable = {0};
+	excerpt_put_printable(text_string(&page->words), page->words.length, &printable);
+	put_escaped(page->out, text_string(&printable));
+	page->out->failed = page->out->failed || printable.failed;
+	text_release(&printable);
+	text_put(page->out, after);
+	page->words.length = 0;
+	text_put(&page->words, "");
+}
+
+static void put_cell(struct page *page, const char *words)
+{
+	text_put(&page->words, words);
+	end_words(page, " | ");
+}
+
+static void begin_table(struct page *page, const char *first, const char *second)
+{
+	text_printf(page->out, "| %s | %s |\n|---|---|\n", first, second);
+}
+
+static void put_fact(struct page *page, const struct fact *fact)
+{
+	text_put(page->out, "| ");
+	put_cell(page, fact->what);
+	text_put(&page->words, fact->now);
+	if (fact->same)
+		text_put(&page->words, ", as before");
+	else if (fact->old != NULL)
+		text_printf(&page->words, ", was %s", fact->old);
+	end_words(page, " |\n");
+}
+
+static void put_change(struct page *page, const struct comparison *comparison, const struct change *change)
+{
+	text_put(page->out, "| ");
+	if (change->section != CHANGE_LIMITS)
+		put_cell(page, change_section_name(change->section));
+	text_put_change_subject(&page->words, change);
+	end_words(page, " | ");
+	text_put_change_value(&page->words, comparison, change);
+	end_words(page, " |\n");
+}
+
+static void put_heading(struct page *page, const struct plan_difference *plan, const char *what)
+{
+	if (plan->bank_count == 0)
+		return;
+	text_printf(page->out, "### %s", what);
+	put_bank_numbers(&page->words, plan);
+	end_words(page, "\n\n");
+}
+
+static void put_facts(struct page *page, const struct plan_difference *plan)
+{
+	const struct comparison *comparison = plan->comparison;
+	put_heading(page, plan, "");
+	if (comparison == NULL) {
+		text_printf(page->out, "Only the %s set has %s.\n\n", plan->only, plan->bank_count == 1 ? "it" : "them");
+		return;
+	}
+	const struct fact musts = musts_fact(plan), advice = advice_fact(plan);
+	begin_table(page, "at the bench", "");
+	put_fact(page, &musts);
+	for (size_t index = 0; plan->images == NULL && index < comparison->fact_count; index++)
+		put_fact(page, &comparison->facts[index]);
+	for (size_t index = 0; index < comparison->count; index++)
+		if (comparison->changes[index].section == CHANGE_LIMITS)
+			put_change(page, comparison, &comparison->changes[index]);
+	if (!advice.same && plan->images == NULL)
+		put_fact(page, &advice);
+	text_put(page->out, "\n");
+}
+
+static void put_chips(struct page *page, const struct difference *difference)
+{
+	const char *advice = chips_advice(difference);
+	begin_table(page, "chip", "");
+	for (size_t index = 0; index < difference->chip_count; index++) {
+		text_put(page->out, "| ");
+		put_cell(page, difference->chips[index].label);
+		put_chip_fate(&page->words, &difference->chips[index]);
+		end_words(page, " |\n");
+	}
+	if (advice != NULL)
+		text_printf(page->out, "\n%s\n", advice);
+	text_put(page->out, "\n");
+}
+
+static void put_changes(struct page *page, const struct plan_difference *plan)
+{
+	if (plan->comparison == NULL || plan->comparison->edits == 0)
+		return;
+	put_heading(page, plan, "changes in ");
+	text_put(page->out, "| | what | change |\n|---|---|---|\n");
+	for (size_t index = 0; index < plan->comparison->count; index++)
+		if (plan->comparison->changes[index].section != CHANGE_LIMITS)
+			put_change(page, plan->comparison, &plan->comparison->changes[index]);
+	text_put(page->out, "\n");
+}
+
+void view_difference_markdown(struct text *out, const struct difference *difference)
+{
+	struct page page = {out, {0}};
+	text_put(out, "**");
+	put_difference_headline(&page.words, difference);
+	end_words(&page, "**\n\n");
+	for (size_t index = 0; index < difference->plan_count; index++)
+		put_facts(&page, &difference->plans[index]);
+	put_chips(&page, difference);
+	for (size_t index = 0; index < difference->plan_count; index++)
+		put_changes(&page, &difference->plans[index]);
+	out->failed = out->failed || page.words.failed;
+	text_release(&page.words);
+}

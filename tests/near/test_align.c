@@ -1,0 +1,132 @@
+// Which old cell each new one is: frames put together by hand, one letter a cell, as pins show it. s: sync, l: load, p: neither.
+#include "../layout/laid.h"
+
+#include "near/near.h"
+
+#define NONE NO_STATE
+
+enum { SYNC = 1, LOAD = 4 }; // signals of laid.h
+
+static uint64_t pins_of(char letter)
+{
+	return letter == 's' ? SYNC : letter == 'l' ? LOAD : 0;
+}
+
+// An old frame whose cell i has state 100 + i.
+static struct old_frame old_frame(struct arena *arena, const char *letters)
+{
+	struct old_frame frame = {.closed = true, .cell_count = (uint32_t)strlen(letters), .known = SYNC | LOAD};
+	frame.states = arena_array(arena, frame.cell_count, sizeof *frame.states);
+	frame.pins = arena_array(arena, frame.cell_count, sizeof *frame.pins);
+	assert_true(frame.states != NULL && frame.pins != NULL);
+	for (uint32_t cell = 0; cell < frame.cell_count; cell++) {
+		frame.states[cell] = 100 + cell;
+		frame.pins[cell] = pins_of(letters[cell]);
+	}
+	return frame;
+}
+
+// A new frame whose only line type shows letters. load has a lead of one cell: it is asserted in the cell after.
+static struct laid new_frame(const char *letters, unsigned repeat)
+{
+	struct arena *arena = arena_create();
+	struct text regions = {0}, frame = {0};
+	assert_non_null(arena);
+	text_put(&regions, "  a:\n    regions:\n");
+	for (size_t cell = 0, cells = strlen(letters); cell < cells; cell++)
+		text_printf(&regions, "      - { region: r, cells: 1, assert: [%s%s] }\n", letters[cell] == 's' ? "sync, " : "",
+		            letters[(cell + cells - 1) % cells] == 'l' ? "load" : "");
+	text_printf(&frame, "  - { repeat: %u, line: a }\n", repeat);
+	struct laid laid = lay("", text_string(&regions), text_string(&frame));
+	assert_laid(&laid);
+	text_release(&regions);
+	text_release(&frame);
+	arena_destroy(arena);
+	return laid;
+}
+
+// The old cell of each new one, less 100, as letters from a on; "." for none.
+static void matched(enum near_way way, const char *old, const char *now, unsigned repeat, const char *wanted)
+{
+	struct arena *arena = arena_create();
+	char found[64] = "";
+	assert_non_null(arena);
+	const struct old_frame frame = old_frame(arena, old);
+	struct laid laid = new_frame(now, repeat);
+	const struct preference *preference = near_preference(arena, laid.timeline, &frame, way);
+	assert_non_null(preference);
+	for (uint32_t cell = 0; cell < laid.timeline->cell_count; cell++) {
+		const uint32_t state = preference->state_of_cell[cell];
+		found[cell] = (char)(state == NONE ? '.' : 'a' + (state - 100));
+	}
+	assert_string_equal(found, wanted);
+	release(&laid);
+	arena_destroy(arena);
+}
+
+static void test_same(void **state)
+{
+	(void)state;
+	for (enum near_way way = NEAR_LINES; way < NEAR_WAYS; way++)
+		matched(way, "sspppp", "sspppp", 1, "abcdef");
+	matched(NEAR_LINES, "ssppssppsspp", "sspp", 3, "abcdefghijkl");
+	matched(NEAR_SHOWN, "ssppssppsspp", "sspp", 3, "abcdefghijkl");
+}
+
+// A line more, and one less: those that are there stay.
+static void test_lines(void **state)
+{
+	(void)state;
+	matched(NEAR_LINES, "sspssp", "ssp", 3, "abcdef...");
+	matched(NEAR_LINES, "sspsspssp", "ssp", 2, "abcdef");
+	matched(NEAR_FRAME, "sspssp", "ssp", 3, "abcdef...");
+	// Of lines that show the same, others may have come to differ, or differ no more.
+	matched(NEAR_LINES, "sspsppsspspp", "ssp", 4, "abcdefghijkl");
+}
+
+// A longer pulse: by place all cells stay, by what they show the picture's first is gone, and the pulse's last new.
+static void test_moved_edge(void **state)
+{
+	(void)state;
+	matched(NEAR_LINES, "sspppssppp", "ssspp", 2, "abcdefghij");
+	matched(NEAR_SHOWN, "ssppp", "ssspp", 1, "ab.de");
+	matched(NEAR_SHOWN, "sssppp", "sspppp", 1, "ab.def");
+}
+
+// A longer line: what is alike at both ends stays there.
+static void test_longer_line(void **state)
+{
+	(void)state;
+	matched(NEAR_LINES, "sspplp", "ssppplp", 1, "abcd.ef");
+	matched(NEAR_SHOWN, "sspplp", "ssppplp", 1, "abcd.ef");
+	matched(NEAR_LINES, "ssppplp", "sspplp", 1, "abcdfg");
+	matched(NEAR_LINES, "ssppsp", "sspppsp", 1, "abcd.ef");
+	matched(NEAR_LINES, "sspp", "sspppp", 1, "abcd..");
+	matched(NEAR_SHOWN, "sspp", "sspppp", 1, "abcd..");
+	matched(NEAR_LINES, "sspppp", "sspp", 1, "abcd");
+}
+
+// Lines begin with sync, wherever the frame begins: a front porch that is longer by a cell leaves the other cells where they were.
+static void test_begins_before_sync(void **state)
+{
+	(void)state;
+	matched(NEAR_LINES, "pssppssp", "ppsspp", 1, "a.bcde");
+	matched(NEAR_FRAME, "psspp", "ppssp", 1, "abcde");
+}
+
+// No frame: nothing to keep.
+static void test_empty(void **state)
+{
+	(void)state;
+	for (enum near_way way = NEAR_LINES; way < NEAR_WAYS; way++)
+		matched(way, "", "ssp", 1, "...");
+}
+
+int main(void)
+{
+	const struct CMUnitTest tests[] = {
+		cmocka_unit_test(test_same),        cmocka_unit_test(test_lines), cmocka_unit_test(test_moved_edge),
+		cmocka_unit_test(test_longer_line), cmocka_unit_test(test_begins_before_sync), cmocka_unit_test(test_empty),
+	};
+	return cmocka_run_group_tests(tests, NULL, NULL);
+}
