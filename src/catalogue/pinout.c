@@ -9,8 +9,8 @@
 enum { PINOUT_PINS, PINOUT_SOURCE, PINOUT_KEY_COUNT };
 
 static const struct key pinout_keys[PINOUT_KEY_COUNT] = {
-	[PINOUT_PINS] = {"pins", KEY_REQUIRED},
-	[PINOUT_SOURCE] = {"source", KEY_REQUIRED},
+	[PINOUT_PINS] = PLAIN_KEY("pins", KEY_REQUIRED),
+	[PINOUT_SOURCE] = PLAIN_KEY("source", KEY_REQUIRED),
 };
 
 // Pins that are neither address nor data, as they are while a chip is read all the time. A programming voltage's pin is at the supply then.
