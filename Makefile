@@ -39,13 +39,16 @@ say = $(if $(QUIET),@echo '  $(1)  $(2)')
 PROGRAM = $(BUILD)/scanlatch
 LIBRARY = $(BUILD)/libscanlatch.a
 CATALOGUE_DATA = $(BUILD)/generated/catalogue_data.c
+REPORT_DATA = $(BUILD)/generated/report_data.c
 
 CATALOGUES = $(wildcard src/catalogue/*.yaml)
+REPORTS = $(sort $(wildcard src/view/reports/*.json src/view/reports/shared/*.json))
 SOURCES = $(wildcard src/*/*.c src/*.c)
 PROGRAM_SOURCES = $(filter src/command/%,$(SOURCES))
 LIBRARY_SOURCES = $(filter-out src/command/%,$(SOURCES))
 PROGRAM_OBJECTS = $(PROGRAM_SOURCES:src/%.c=$(BUILD)/obj/%.o)
-LIBRARY_OBJECTS = $(LIBRARY_SOURCES:src/%.c=$(BUILD)/obj/%.o) $(BUILD)/obj/generated/catalogue_data.o
+LIBRARY_OBJECTS = $(LIBRARY_SOURCES:src/%.c=$(BUILD)/obj/%.o) $(BUILD)/obj/generated/catalogue_data.o \
+	$(BUILD)/obj/generated/report_data.o
 
 TEST_PROGRAMS = $(patsubst tests/%.c,$(BUILD)/tests/%,$(wildcard tests/$(FOLDER)/test_*.c))
 TEST_SCRIPTS = $(wildcard tests/$(FOLDER)/*.sh)
@@ -111,6 +114,23 @@ $(CATALOGUE_DATA): $(CATALOGUES)
 		echo "const size_t catalogue_$${name}_length = sizeof catalogue_$$name - 1;"; \
 	done; } > $@
 
+# The schema of each report, and the definitions that they share: a table of names and texts, then an entry without a name.
+$(REPORT_DATA): $(REPORTS) $(BUILD)/reports
+	@mkdir -p $(@D)
+	$(call say,DATA,$@)
+	$(QUIET){ echo '#include "view/reports.h"'; \
+	table=; \
+	for file in $(REPORTS); do \
+		name=$$(basename "$$file" .json); \
+		case $$file in */shared/*) shared=true ;; *) shared=false ;; esac; \
+		data=$$(echo "data_$${shared}_$$name" | tr - _); \
+		echo "static const unsigned char $$data[] = {"; \
+		od -An -v -tx1 "$$file" | sed 's/ *\([0-9a-f][0-9a-f]\)/0x\1,/g'; \
+		echo "};"; \
+		table="$$table{\"$$name\", $$shared, $$data, sizeof $$data}, "; \
+	done; \
+	echo "const struct report_file report_files[] = {$$table{NULL, false, NULL, 0}};"; } > $@
+
 $(TEST_PROGRAMS): CLIENT_LIBRARIES = -lcmocka
 $(TEST_PROGRAMS): $(BUILD)/tests/%: tests/%.c
 $(BENCH_PROGRAMS) $(FUZZ_PROGRAMS): $(BUILD)/%: tools/%.c
@@ -122,7 +142,8 @@ $(CLIENTS): $(LIBRARY) $(BUILD)/flags | $(PACKAGES)
 # What was compiled last time, so that other flags or a vanished source lead to a new build.
 $(BUILD)/flags: export STAMP = $(CC) $(FLAGS)
 $(BUILD)/members: export STAMP = $(LIBRARY_OBJECTS)
-$(BUILD)/flags $(BUILD)/members: FORCE
+$(BUILD)/reports: export STAMP = $(REPORTS)
+$(BUILD)/flags $(BUILD)/members $(BUILD)/reports: FORCE
 	@mkdir -p $(@D)
 	@printf '%s\n' "$$STAMP" | cmp -s - $@ || printf '%s\n' "$$STAMP" > $@
 

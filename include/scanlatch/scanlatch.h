@@ -162,6 +162,94 @@ char *scanlatch_difference_text(const scanlatch_difference *difference);
 char *scanlatch_difference_markdown(const scanlatch_difference *difference);
 char *scanlatch_difference_json(const scanlatch_difference *difference);
 
+/* ---- Fit: layouts of lines that suit a standard ---- */
+
+/* What is asked. Texts stay the caller's and are not needed once the search is done. */
+typedef struct scanlatch_fit_request {
+	const char *standard;      /* a name of the catalogue */
+	unsigned columns;          /* cells of picture in a line, 1 to 4096 */
+	unsigned lines;            /* lines with picture, up to 4096; 0: as many as a field of the standard has, halves left out */
+	const char *crystal;       /* names of the catalogue or frequencies, separated by commas; NULL: all of the catalogue */
+	const char *ticks_per_dot; /* whole numbers and ranges, 1 to 256: "1,2", "1-4" */
+	const char *dots_per_cell; /* the same */
+	unsigned stretched;        /* cells of a line that may be stretched at most, 0 to 64; only where there is a subcarrier */
+	unsigned width;            /* the least width of the picture, 0 to 100 percent of the published one */
+	const char *phase;         /* "every line", "every 2 lines" or "free"; only where there is a subcarrier */
+	const char *grade;         /* "studio" or "monitor" */
+	unsigned top;              /* how many layouts are kept at most, 1 to 1000 */
+} scanlatch_fit_request;
+
+/* What is not asked otherwise: all crystals, 1-4 ticks a dot, 6-16 dots a cell, 4 stretched cells, half the width, every line,
+ * monitor, 10 layouts. The standard and the columns are left to be filled in. Cannot fail. */
+scanlatch_fit_request scanlatch_fit_defaults(void);
+
+typedef struct scanlatch_fit scanlatch_fit;
+
+/* Searches; finding nothing is no failure. NULL if the request is bad, then *why says what was wanted and what was found, beginning
+ * with the member's name with "-" for "_", and is to be freed with scanlatch_free; or if memory is out, then *why is NULL. */
+scanlatch_fit *scanlatch_fit_search(const scanlatch_fit_request *request, char **why);
+void scanlatch_fit_destroy(scanlatch_fit *fit);
+
+/* How many layouts were kept. Cannot fail. */
+size_t scanlatch_fit_count(const scanlatch_fit *fit);
+
+/* What `scanlatch fit` reports, and the same as a JSON document (shape: src/view/fit.h). NULL when memory is out. */
+char *scanlatch_fit_text(const scanlatch_fit *fit);
+char *scanlatch_fit_json(const scanlatch_fit *fit);
+
+/* Layout 0 … count-1 as a complete plan, with its length in bytes. NULL when memory is out. */
+char *scanlatch_fit_plan(const scanlatch_fit *fit, size_t index, size_t *length);
+/* ---- Pictures: SVG documents, well-formed XML; what is too much to be drawn is left out, and the picture says so ---- */
+
+/* Of a set the plan that a bank shows is drawn; a plan alone has bank 0, and more if pins are wired for them. All return NULL after
+ * adding an error to messages: there is no such bank or line, or nothing to draw. */
+
+/* The signals of a line at their pins. `line` is the name of a line type, whose first line in the frame is drawn, or a line's number in
+ * the frame, from 0; NULL: the type that most lines have. */
+char *scanlatch_draw_line(const scanlatch_plan *plan, unsigned bank, const char *line, scanlatch_messages *messages);
+/* The same as text for a terminal of so many columns (fewer than 20 count as 20), in Unicode or ASCII. */
+char *scanlatch_draw_line_text(const scanlatch_plan *plan, unsigned bank, const char *line, unsigned columns, bool ascii,
+                               scanlatch_messages *messages);
+/* The whole frame. `interleaved`: the lines of two fields between each other; for interlaced frames only. */
+char *scanlatch_draw_frame(const scanlatch_plan *plan, unsigned bank, bool interleaved, scanlatch_messages *messages);
+/* The addresses of each stage and what their rows are for. Only for images that were made, not read; NULL without an error otherwise. */
+char *scanlatch_draw_table(const scanlatch_images *images, unsigned bank, scanlatch_messages *messages);
+/* The phase of the subcarrier at the start of each line. */
+char *scanlatch_draw_phase(const scanlatch_plan *plan, unsigned bank, scanlatch_messages *messages);
+/* ---- Lifting: a plan read back out of images ---- */
+
+/* Reads a board from a file ("-" is standard input): a plan without lines and frame. A plan is taken too, its lines and frame are passed over; so
+ * is a set, whole. The result is for images that are read, and for lifting: what wants a plan's lines gives NULL, as if memory were
+ * out. NULL after adding at least one error to messages, which keep the text and must outlive the board. */
+scanlatch_plan *scanlatch_board_read_file(const char *path, scanlatch_messages *messages);
+
+typedef struct scanlatch_lift scanlatch_lift;
+
+struct scanlatch_lift_options {
+	const char *cut;    /* name of the signal at whose leading edge lines are cut; NULL: the board's composite or horizontal sync */
+	bool near;          /* pin the state of every cell */
+	unsigned bank;      /* setting of the jumpers */
+};
+
+/* Lifts a plan from images that are complete; both must outlive the result. What it lays out is compared with the images' loop, and with `near`
+ * its images with theirs. NULL after adding an error: the images go through no raster, or memory is out. */
+scanlatch_lift *scanlatch_lift_images(const scanlatch_images *images, const struct scanlatch_lift_options *options,
+                                      scanlatch_messages *messages);
+void scanlatch_lift_destroy(scanlatch_lift *lift);
+
+/* True if the images have other loops too or, with `near`, rows that the plan does not give back; the messages say more. Cannot fail. */
+bool scanlatch_lift_found(const scanlatch_lift *lift);
+
+/* The plan. Owned by the lift. Cannot fail. */
+const char *scanlatch_lift_plan(const scanlatch_lift *lift);
+/* What was found, as text and as JSON (its shape: src/view/lift.h). NULL when memory is out. */
+char *scanlatch_lift_text(const scanlatch_lift *lift);
+char *scanlatch_lift_json(const scanlatch_lift *lift);
+
+/* The image of a chip in words, a line for each run of addresses whose rows follow each other alike. NULL when memory is out. The image
+ * must have been read. */
+char *scanlatch_images_chip_text(const scanlatch_images *images, size_t chip);
+
 /* ---- Catalogues ---- */
 
 /* The catalogues of parts, of standards and of crystals as text or JSON (shapes: src/view/parts.h, standards.h, crystals.h).
@@ -172,6 +260,15 @@ char *scanlatch_standards_text(void);
 char *scanlatch_standards_json(void);
 char *scanlatch_crystals_text(void);
 char *scanlatch_crystals_json(void);
+
+/* ---- Schemas: JSON Schema (draft 2020-12) of the languages and of the reports ---- */
+
+/* How many there are: of the languages of plans, sets and boards, of each report in JSON, and of the manifest. Cannot fail. */
+size_t scanlatch_schema_count(void);
+/* The name of schema 0 … count-1: "plan", "set", "board", then those of reports. Cannot fail. */
+const char *scanlatch_schema_name(size_t schema);
+/* One of them as a JSON document. NULL when memory is out. */
+char *scanlatch_schema_json(size_t schema);
 
 #ifdef __cplusplus
 }

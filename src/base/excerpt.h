@@ -25,6 +25,8 @@ struct excerpt_cursor {
 void excerpt_put(struct excerpt_cursor *cursor, struct place place, struct text *out);
 
 // Puts `length` bytes with the same replacements, so that no name out of a plan can command a terminal.
+#define UNPRINTABLE_PATTERN \
+	"[\\u0000-\\u001f\\u007f-\\u009f\\u061c\\u200e\\u200f\\u2028-\\u202e\\u2066-\\u2069]" // what is replaced, of UTF-8
 void excerpt_put_printable(const char *bytes, size_t length, struct text *out);
 
 #endif

@@ -14,27 +14,27 @@ enum { LOGIC_CONDITIONS, LOGIC_DELAY, LOGIC_SETUP, LOGIC_KEY_COUNT };
 enum { TIME_TIME, TIME_SOURCE, TIME_KEY_COUNT };
 
 static const struct key section_keys[SECTION_COUNT] = {
-	[SECTION_MEMORIES] = {"memories", KEY_REQUIRED},
-	[SECTION_LATCHES] = {"latches", KEY_REQUIRED},
-	[SECTION_COUNTERS] = {"counters", KEY_REQUIRED},
-	[SECTION_DECODERS] = {"decoders", KEY_REQUIRED},
+	[SECTION_MEMORIES] = PLAIN_KEY("memories", KEY_REQUIRED),
+	[SECTION_LATCHES] = PLAIN_KEY("latches", KEY_REQUIRED),
+	[SECTION_COUNTERS] = PLAIN_KEY("counters", KEY_REQUIRED),
+	[SECTION_DECODERS] = PLAIN_KEY("decoders", KEY_REQUIRED),
 };
 static const struct key part_keys[PART_KEY_COUNT] = {
-	[PART_ADDRESS_PINS] = {"address pins", KEY_REQUIRED},
-	[PART_DATA_PINS] = {"data pins", KEY_REQUIRED},
-	[PART_PACKAGE] = {"package", KEY_REQUIRED},
-	[PART_SOURCE] = {"source", KEY_REQUIRED},
-	[PART_ACCESS] = {"access", KEY_REQUIRED},
+	[PART_ADDRESS_PINS] = PLAIN_KEY("address pins", KEY_REQUIRED),
+	[PART_DATA_PINS] = PLAIN_KEY("data pins", KEY_REQUIRED),
+	[PART_PACKAGE] = PLAIN_KEY("package", KEY_REQUIRED),
+	[PART_SOURCE] = PLAIN_KEY("source", KEY_REQUIRED),
+	[PART_ACCESS] = PLAIN_KEY("access", KEY_REQUIRED),
 };
 // A decoder has all but the last.
 static const struct key logic_keys[LOGIC_KEY_COUNT] = {
-	[LOGIC_CONDITIONS] = {"conditions", KEY_REQUIRED},
-	[LOGIC_DELAY] = {"delay", KEY_REQUIRED},
-	[LOGIC_SETUP] = {"setup", KEY_REQUIRED},
+	[LOGIC_CONDITIONS] = PLAIN_KEY("conditions", KEY_REQUIRED),
+	[LOGIC_DELAY] = PLAIN_KEY("delay", KEY_REQUIRED),
+	[LOGIC_SETUP] = PLAIN_KEY("setup", KEY_REQUIRED),
 };
 static const struct key time_keys[TIME_KEY_COUNT] = {
-	[TIME_TIME] = {"time", KEY_REQUIRED},
-	[TIME_SOURCE] = {"source", KEY_REQUIRED},
+	[TIME_TIME] = PLAIN_KEY("time", KEY_REQUIRED),
+	[TIME_SOURCE] = PLAIN_KEY("source", KEY_REQUIRED),
 };
 
 // The read_… functions below report what is wrong and read on; what they leave behind is used only if nothing was reported.

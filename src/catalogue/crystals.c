@@ -9,11 +9,11 @@
 
 enum { CRYSTAL_FREQUENCY, CRYSTAL_USE, CRYSTAL_SOURCE, CRYSTAL_KEY_COUNT };
 
-static const struct key file_keys[] = {{"crystals", KEY_REQUIRED}};
+static const struct key file_keys[] = {PLAIN_KEY("crystals", KEY_REQUIRED)};
 static const struct key crystal_keys[CRYSTAL_KEY_COUNT] = {
-	[CRYSTAL_FREQUENCY] = {"frequency", KEY_REQUIRED},
-	[CRYSTAL_USE] = {"use", KEY_REQUIRED},
-	[CRYSTAL_SOURCE] = {"source", KEY_REQUIRED},
+	[CRYSTAL_FREQUENCY] = PLAIN_KEY("frequency", KEY_REQUIRED),
+	[CRYSTAL_USE] = PLAIN_KEY("use", KEY_REQUIRED),
+	[CRYSTAL_SOURCE] = PLAIN_KEY("source", KEY_REQUIRED),
 };
 
 // The read_… functions below report what is wrong and read on; what they leave behind is used only if nothing was reported.

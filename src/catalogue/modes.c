@@ -14,24 +14,24 @@ enum {
 enum { SHARE_LOW, SHARE_HIGH, SHARE_SOURCE, SHARE_KEY_COUNT };
 
 static const struct key mode_keys[MODE_KEY_COUNT] = {
-	[MODE_TITLE] = {"title", KEY_REQUIRED},
-	[MODE_DOCUMENTS] = {"documents", KEY_REQUIRED},
-	[MODE_CLOCK] = {"pixel clock", KEY_REQUIRED},
-	[MODE_HORIZONTAL] = {"dots", KEY_REQUIRED},
-	[MODE_VERTICAL] = {"lines", KEY_REQUIRED},
-	[MODE_HORIZONTAL_SYNC] = {"horizontal sync", KEY_REQUIRED},
-	[MODE_VERTICAL_SYNC] = {"vertical sync", KEY_REQUIRED},
-	[MODE_SOURCE] = {"source", KEY_REQUIRED},
-	[MODE_NOTE] = {"note", KEY_OPTIONAL},
+	[MODE_TITLE] = PLAIN_KEY("title", KEY_REQUIRED),
+	[MODE_DOCUMENTS] = PLAIN_KEY("documents", KEY_REQUIRED),
+	[MODE_CLOCK] = PLAIN_KEY("pixel clock", KEY_REQUIRED),
+	[MODE_HORIZONTAL] = PLAIN_KEY("dots", KEY_REQUIRED),
+	[MODE_VERTICAL] = PLAIN_KEY("lines", KEY_REQUIRED),
+	[MODE_HORIZONTAL_SYNC] = PLAIN_KEY("horizontal sync", KEY_REQUIRED),
+	[MODE_VERTICAL_SYNC] = PLAIN_KEY("vertical sync", KEY_REQUIRED),
+	[MODE_SOURCE] = PLAIN_KEY("source", KEY_REQUIRED),
+	[MODE_NOTE] = PLAIN_KEY("note", KEY_OPTIONAL),
 };
 static const struct key share_keys[SHARE_KEY_COUNT] = {
-	[SHARE_LOW] = {"low", KEY_OPTIONAL},
-	[SHARE_HIGH] = {"high", KEY_OPTIONAL},
-	[SHARE_SOURCE] = {"source", KEY_REQUIRED},
+	[SHARE_LOW] = PLAIN_KEY("low", KEY_OPTIONAL),
+	[SHARE_HIGH] = PLAIN_KEY("high", KEY_OPTIONAL),
+	[SHARE_SOURCE] = PLAIN_KEY("source", KEY_REQUIRED),
 };
 static const struct key grade_keys[GRADE_COUNT] = {
-	[GRADE_STUDIO] = {"studio", KEY_REQUIRED},
-	[GRADE_MONITOR] = {"monitor", KEY_REQUIRED},
+	[GRADE_STUDIO] = PLAIN_KEY("studio", KEY_REQUIRED),
+	[GRADE_MONITOR] = PLAIN_KEY("monitor", KEY_REQUIRED),
 };
 
 // What modes have, in the order of the items.
@@ -72,7 +72,7 @@ void read_mode_rules(struct reader *reader, const struct node *node, struct mode
 	struct key keys[COUNT_OF(mode_items)];
 	const struct node *values[COUNT_OF(mode_items)], *grades[GRADE_COUNT];
 	for (size_t index = 0; index < COUNT_OF(mode_items); index++)
-		keys[index] = (struct key){limit_item_facts(mode_items[index])->name, KEY_REQUIRED};
+		keys[index] = (struct key)PLAIN_KEY(limit_item_facts(mode_items[index])->name, KEY_REQUIRED);
 	for (size_t item = 0; item < ITEM_COUNT; item++)
 		for (size_t grade = 0; grade < GRADE_COUNT; grade++)
 			rules->shares[item][grade] = (struct mode_share){false, false, FRACTION_ZERO, FRACTION_ZERO, ""};
@@ -207,8 +207,11 @@ static void make_limits(struct reader *reader, const struct node *place, const s
 			limit->grade = (enum limit_grade)grade;
 			if (make_limit(reader, mode, source, &rules->shares[limit->item][grade], limit))
 				continue;
-			diagnose(reader->diagnostics, RULE_BAD_QUANTITY, place->place, "%s cannot be kept exactly",
-			         limit_item_facts(limit->item)->name);
+			if (limit->source == NULL)
+				diagnose(reader->diagnostics, RULE_OUT_OF_MEMORY, place->place, "memory is out");
+			else
+				diagnose(reader->diagnostics, RULE_BAD_QUANTITY, place->place, "%s cannot be kept exactly",
+				         limit_item_facts(limit->item)->name);
 			return;
 		}
 }

@@ -20,32 +20,32 @@ enum { VALUE_LIMIT, VALUE_SOURCE, VALUE_KEY_COUNT };
 enum { PAUSE_FIELD, PAUSE_FIRST, PAUSE_LAST, PAUSE_SOURCE, PAUSE_KEY_COUNT };
 
 static const struct key file_keys[FILE_KEY_COUNT] = {
-	[FILE_STANDARDS] = {"standards", KEY_REQUIRED},
-	[FILE_MODE_LIMITS] = {"mode limits", KEY_REQUIRED},
-	[FILE_MODES] = {"modes", KEY_REQUIRED},
+	[FILE_STANDARDS] = PLAIN_KEY("standards", KEY_REQUIRED),
+	[FILE_MODE_LIMITS] = PLAIN_KEY("mode limits", KEY_REQUIRED),
+	[FILE_MODES] = PLAIN_KEY("modes", KEY_REQUIRED),
 };
 static const struct key standard_keys[STANDARD_KEY_COUNT] = {
-	[STANDARD_TITLE] = {"title", KEY_REQUIRED},
-	[STANDARD_DOCUMENTS] = {"documents", KEY_REQUIRED},
-	[STANDARD_FIELDS] = {"fields", KEY_REQUIRED},
-	[STANDARD_SYNC_LINE] = {"vertical sync line", KEY_REQUIRED},
-	[STANDARD_LIMITS] = {"limits", KEY_REQUIRED},
-	[STANDARD_PAUSES] = {"burst pauses", KEY_OPTIONAL},
-	[STANDARD_NOTES] = {"notes", KEY_OPTIONAL},
+	[STANDARD_TITLE] = PLAIN_KEY("title", KEY_REQUIRED),
+	[STANDARD_DOCUMENTS] = PLAIN_KEY("documents", KEY_REQUIRED),
+	[STANDARD_FIELDS] = PLAIN_KEY("fields", KEY_REQUIRED),
+	[STANDARD_SYNC_LINE] = PLAIN_KEY("vertical sync line", KEY_REQUIRED),
+	[STANDARD_LIMITS] = PLAIN_KEY("limits", KEY_REQUIRED),
+	[STANDARD_PAUSES] = PLAIN_KEY("burst pauses", KEY_OPTIONAL),
+	[STANDARD_NOTES] = PLAIN_KEY("notes", KEY_OPTIONAL),
 };
 static const struct key grade_keys[GRADE_COUNT] = {
-	[GRADE_STUDIO] = {"studio", KEY_REQUIRED},
-	[GRADE_MONITOR] = {"monitor", KEY_REQUIRED},
+	[GRADE_STUDIO] = PLAIN_KEY("studio", KEY_REQUIRED),
+	[GRADE_MONITOR] = PLAIN_KEY("monitor", KEY_REQUIRED),
 };
 static const struct key value_keys[VALUE_KEY_COUNT] = {
-	[VALUE_LIMIT] = {"limit", KEY_REQUIRED},
-	[VALUE_SOURCE] = {"source", KEY_REQUIRED},
+	[VALUE_LIMIT] = PLAIN_KEY("limit", KEY_REQUIRED),
+	[VALUE_SOURCE] = PLAIN_KEY("source", KEY_REQUIRED),
 };
 static const struct key pause_keys[PAUSE_KEY_COUNT] = {
-	[PAUSE_FIELD] = {"field", KEY_REQUIRED},
-	[PAUSE_FIRST] = {"first line", KEY_REQUIRED},
-	[PAUSE_LAST] = {"last line", KEY_REQUIRED},
-	[PAUSE_SOURCE] = {"source", KEY_REQUIRED},
+	[PAUSE_FIELD] = PLAIN_KEY("field", KEY_REQUIRED),
+	[PAUSE_FIRST] = PLAIN_KEY("first line", KEY_REQUIRED),
+	[PAUSE_LAST] = PLAIN_KEY("last line", KEY_REQUIRED),
+	[PAUSE_SOURCE] = PLAIN_KEY("source", KEY_REQUIRED),
 };
 
 // The read_… functions below report what is wrong and read on; what they leave behind is used only if nothing was reported.
@@ -75,7 +75,7 @@ static void read_limits(struct reader *reader, const struct node *node, struct s
 	struct key keys[ITEM_COUNT];
 	const struct node *values[ITEM_COUNT], *grades[GRADE_COUNT];
 	for (size_t item = 0; item < ITEM_COUNT; item++)
-		keys[item] = (struct key){limit_item_facts((enum limit_item)item)->name, KEY_OPTIONAL};
+		keys[item] = (struct key)PLAIN_KEY(limit_item_facts((enum limit_item)item)->name, KEY_OPTIONAL);
 	if (node == NULL || !read_mapping(reader, node, "limits", keys, ITEM_COUNT, values) ||
 	    !catalogue_count(reader, node, "limits", ITEM_COUNT))
 		return;

@@ -29,7 +29,7 @@ static const char help[] =
 	"      --near DIR     keep the states of the images in DIR, made before, as far as the plan allows, so that\n"
 	"                     chips whose rows do not change keep their bytes; the report counts bytes that change\n"
 	"      --unproven     write even if a proof fails; the exit code is still 1\n"
-	"      --strict       advice that fails counts like a must\n"
+	"      --strict       advice that fails (upset, limits, glitches, speed) counts like a must\n"
 	"      --json         one JSON document instead of text (a list of them for several plans)\n"
 	"      --color WHEN   auto, always or never\n"
 	"  -h, --help         print this help\n"
@@ -327,12 +327,8 @@ static int print_json(const struct build *build, bool written)
 // Writes all files. A signal that would end the program waits until the temporaries are gone. False with *failure filled.
 static bool write_files(struct build *build, struct write_failure *failure)
 {
-	static const int ending[] = {SIGINT, SIGTERM, SIGHUP, SIGQUIT};
-	sigset_t waiting, before;
-	sigemptyset(&waiting);
-	for (size_t index = 0; index < sizeof ending / sizeof *ending; index++)
-		sigaddset(&waiting, ending[index]);
-	pthread_sigmask(SIG_BLOCK, &waiting, &before); // before the thread that shows progress, which inherits it
+	sigset_t before;
+	hold_ending_signals(&before); // before the thread that shows progress, which inherits it
 	progress_begin(&build->progress, "writing");
 	const bool written = file_write_all(build->arena, build->options->directory, build->files, build->file_count, failure);
 	progress_end(&build->progress);

@@ -3,6 +3,7 @@
 #define SCANLATCH_COMMAND_COMMAND_H
 
 #include <pthread.h>
+#include <signal.h>
 #include <stdbool.h>
 #include <stddef.h>
 
@@ -37,12 +38,16 @@ extern const size_t command_count;
 int command_build(int argument_count, char **arguments);
 int command_check(int argument_count, char **arguments);
 int command_diff(int argument_count, char **arguments);
+int command_fit(int argument_count, char **arguments);
+int command_draw(int argument_count, char **arguments);
+int command_lift(int argument_count, char **arguments);
 int command_list(int argument_count, char **arguments);
 int command_prove(int argument_count, char **arguments);
+int command_schema(int argument_count, char **arguments);
 
 // Long options without a short one: values above any character.
-enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING, OPTION_GIT,
-       OPTION_MARKDOWN, OPTION_NEAR };
+enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING,
+       OPTION_LINE, OPTION_BANK, OPTION_TEXT, OPTION_ASCII, OPTION_INTERLEAVE, OPTION_CUT, OPTION_NEAR, OPTION_GIT, OPTION_MARKDOWN };
 
 // The options that every command has, for its table.
 #define COMMON_LONG_OPTIONS                                                                                                \
@@ -82,8 +87,23 @@ int print_messages(const scanlatch_messages *messages, enum colour_choice colour
 // Writes a string to standard output and frees it; "memory is out" if it is NULL. Returns EXIT_GOOD or EXIT_SYSTEM.
 int print_string(char *string);
 
+// Lets the signals that would end the program wait, so that no temporary file is left; *before is what to restore.
+void hold_ending_signals(sigset_t *before);
+
+// Writes a result as a file, whole or not at all, says so on standard output, and of a refusal why. Returns EXIT_GOOD or EXIT_SYSTEM.
+int write_result(const char *path, const char *result);
+
 // "scanlatch: memory is out" on standard error. Returns EXIT_SYSTEM.
 int memory_error(void);
+
+bool is_folder(const char *path);
+
+// Checks the arguments of a command that takes a plan (or what it calls so) and images: a folder, or LABEL=FILE for each chip. EXIT_GOOD,
+// or EXIT_BAD after saying what is wrong.
+int check_image_arguments(const char *command, const char *what, char **arguments, int count);
+
+// Reads the images that such arguments name, after the plan. False if one could not be read or is missing; the messages say why.
+bool read_images(scanlatch_images *images, char **arguments, int count, scanlatch_messages *messages);
 
 // The worse of two exit codes: a refusal of the system before bad input before findings. Cannot fail.
 int worse(int left, int right);

@@ -2,7 +2,6 @@
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
-#include <sys/stat.h>
 
 #include "command/command.h"
 
@@ -58,12 +57,6 @@ struct side {
 	scanlatch_images *images;
 	scanlatch_proofs *proofs;
 };
-
-static bool is_folder(const char *path)
-{
-	struct stat status;
-	return stat(path, &status) == 0 && S_ISDIR(status.st_mode);
-}
 
 static void side_release(struct side *side)
 {

@@ -10,13 +10,16 @@ const struct command commands[] = {
 	{"build", "make the images of plans or sets, prove them and write them", command_build},
 	{"prove", "prove images that are there against their plan or set", command_prove},
 	{"diff", "what changed between two plans, sets, or a plan and images", command_diff},
+	{"draw", "draw a line, the frame, the tables or the colour phase of a plan", command_draw},
+	{"fit", "search line layouts that suit a standard, and write one as a plan", command_fit},
+	{"lift", "read a plan back out of images", command_lift},
 	{"list", "print a catalogue: parts, standards or crystals", command_list},
+	{"schema", "print a JSON Schema of plans, sets, boards or reports", command_schema},
 };
 const size_t command_count = sizeof commands / sizeof *commands;
 
 // Commands that the design has and this version does not.
-static const char *const later_commands[] = {"draw", "sheet", "fit", "lift",
-                                             "readback", "probe", "export", "schema"};
+static const char *const later_commands[] = {"sheet", "readback", "probe", "export"};
 
 static void print_help(FILE *out)
 {

@@ -1,8 +1,5 @@
 #include <getopt.h>
 #include <stdio.h>
-#include <stdlib.h>
-#include <string.h>
-#include <sys/stat.h>
 #include <unistd.h>
 
 #include "command/command.h"
@@ -19,7 +16,8 @@ static const char help[] =
 	"\n"
 	"Options:\n"
 	"      --json         one JSON document instead of text\n"
-	"      --strict       advice that fails counts like a must: exit code 1\n"
+	"      --strict       advice that fails (upset, limits, glitches, speed) counts like a must:\n"
+	"                     exit code 1\n"
 	"      --color WHEN   auto, always or never\n"
 	"  -h, --help         print this help\n"
 	"  -V, --version      print the version\n";
@@ -29,25 +27,6 @@ static const struct option long_options[] = {
 	{"strict", no_argument, NULL, OPTION_STRICT},
 	{NULL, 0, NULL, 0},
 };
-
-static bool is_folder(const char *path)
-{
-	struct stat status;
-	return stat(path, &status) == 0 && S_ISDIR(status.st_mode);
-}
-
-// Reads LABEL=FILE arguments. False if one could not be read; the messages say why.
-static bool read_files(scanlatch_images *images, char **arguments, int count, scanlatch_messages *messages)
-{
-	bool good = true;
-	for (int index = 0; index < count; index++) {
-		char *equals = strchr(arguments[index], '=');
-		*equals = '\0';
-		good = scanlatch_images_read_file(images, arguments[index], equals + 1, messages) && good;
-		*equals = '=';
-	}
-	return good && scanlatch_images_complete(images, messages);
-}
 
 static int report_proofs(const scanlatch_images *images, const struct common_options *options)
 {
@@ -74,10 +53,8 @@ static int prove(const char *path, char **arguments, int count, const struct com
 	int code = EXIT_GOOD;
 	if (plan != NULL && images == NULL)
 		code = memory_error();
-	if (images != NULL && is_folder(arguments[0]))
-		scanlatch_images_read_folder(images, arguments[0], messages);
-	else if (images != NULL)
-		read_files(images, arguments, count, messages);
+	if (images != NULL)
+		read_images(images, arguments, count, messages);
 	progress_end(&progress);
 	code = worse(code, print_messages(messages, options->colour));
 	if (code == EXIT_GOOD)
@@ -85,21 +62,6 @@ static int prove(const char *path, char **arguments, int count, const struct com
 	scanlatch_images_destroy(images);
 	scanlatch_plan_destroy(plan);
 	return code;
-}
-
-static int check_arguments(char **arguments, int count)
-{
-	if (count < 2)
-		return usage_error("prove", "wanted a plan and images, found %s", count == 0 ? "nothing" : "no images");
-	const bool folder = is_folder(arguments[1]) || strchr(arguments[1], '=') == NULL;
-	if (folder && count > 2)
-		return usage_error("prove", "wanted one folder, or LABEL=FILE for each chip, found \"%s\" and more", arguments[1]);
-	if (folder && !is_folder(arguments[1]))
-		return usage_error("prove", "\"%s\" is not a folder; a single image is given as LABEL=FILE", arguments[1]);
-	for (int index = 1; !folder && index < count; index++)
-		if (strchr(arguments[index], '=') == NULL)
-			return usage_error("prove", "wanted LABEL=FILE, found \"%s\"", arguments[index]);
-	return EXIT_GOOD;
 }
 
 static const struct option_table table = {"prove", help, "hV", long_options, NULL};
@@ -110,7 +72,7 @@ int command_prove(int argument_count, char **arguments)
 	const int parsed = parse_options(&table, argument_count, arguments, &options);
 	if (parsed != PARSED)
 		return parsed;
-	int code = check_arguments(arguments + optind, argument_count - optind);
+	int code = check_image_arguments("prove", "plan", arguments + optind, argument_count - optind);
 	if (code != EXIT_GOOD)
 		return code;
 	scanlatch_messages *messages = scanlatch_messages_create();

@@ -38,6 +38,7 @@ bool layout_place_stretch(struct layout *layout, struct placements *placements)
 		return true;
 	if (!placement_groups(&model, &linear))
 		return false;
+	placements->unweighed = !linear;
 	if (linear && !placement_search(&model, placements))
 		return false;
 	if (placements->judged)

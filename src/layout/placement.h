@@ -22,6 +22,8 @@ struct placement {
 };
 
 struct placements {
+	bool unweighed;               // there is a choice, but what it does to the limits could not be reckoned: it would take too long, or
+	                              // pulses change their kinds with it; they stay leftmost
 	bool judged;                  // the limits decided; otherwise there is nothing below
 	const struct stretch_segment *segments; // in the order of line types and cells
 	size_t segment_count;
@@ -62,11 +64,12 @@ struct placement_model {
 	size_t group_count;
 };
 
-// Lists segments. False when memory is out.
+// Lists segments: of regions that may be stretched, but for those that assert the stretch signal by name and are long already. False when
+// memory is out.
 bool placement_segments(struct placement_model *model);
 // Measures what each segment does to each item. *linear: the limits can be reckoned so. False when memory is out.
 bool placement_groups(struct placement_model *model, bool *linear);
-// Finds the best and the second best. False when memory is out.
+// Finds the best and the second best; *placements stays as it is if no limit decides. False when memory is out.
 bool placement_search(const struct placement_model *model, struct placements *placements);
 
 #endif

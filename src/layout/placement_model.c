@@ -40,7 +40,8 @@ static size_t put_segments(const struct placement_model *model, size_t type, str
 	bool open = false;
 	for (uint32_t cell = 0; cell < laid->cells; cell++) {
 		open = open && !is_edge(laid, cell, traced);
-		if (line->regions[laid->region_of_cell[cell]].stretch != STRETCH_AUTO)
+		const struct region *region = &line->regions[laid->region_of_cell[cell]];
+		if (region->stretch != STRETCH_AUTO || (region->assert_mask & stretch_bit(model->plan)) != 0)
 			continue;
 		if (!open)
 			segments[count++] = (struct stretch_segment){type, cells, 0};
@@ -105,15 +106,22 @@ static void put_line(const struct placement_model *model, size_t type, struct sa
 	sample->cells += laid->cells;
 }
 
+static uint64_t cells_of_sample(const struct placement_model *model)
+{
+	const struct plan *plan = model->plan;
+	uint64_t cells = 0;
+	for (size_t index = 0; index < plan->block_count; index++)
+		cells += (uint64_t)repeats_of(&plan->blocks[index]) * model->types[plan->blocks[index].line_type].cells;
+	return cells;
+}
+
 static bool make_sample(const struct placement_model *model, struct arena *arena, struct sample *sample)
 {
 	const struct plan *plan = model->plan;
-	uint64_t cells = 0, lines = 0;
-	for (size_t index = 0; index < plan->block_count; index++) {
+	uint64_t lines = 0;
+	for (size_t index = 0; index < plan->block_count; index++)
 		lines += repeats_of(&plan->blocks[index]);
-		cells += repeats_of(&plan->blocks[index]) * model->types[plan->blocks[index].line_type].cells;
-	}
-	*sample = (struct sample){.asserted = arena_array(arena, cells, sizeof(uint64_t)),
+	*sample = (struct sample){.asserted = arena_array(arena, cells_of_sample(model), sizeof(uint64_t)),
 	                          .first_cells = arena_array(arena, lines, sizeof(uint32_t)),
 	                          .line_types = arena_array(arena, lines, sizeof(size_t))};
 	if (sample->asserted == NULL || sample->first_cells == NULL || sample->line_types == NULL)
@@ -229,6 +237,7 @@ static bool find_weights(const struct placement_model *model, struct sample *sam
 }
 
 #define MOST_WEIGHTS 16777216u // so that giant frames do not take memory without end
+#define MOST_MEASURED 50000000u // cells, over all segments: some seconds; a board takes less than a million
 
 static bool weigh(struct placement_model *model, struct arena *arena, bool *linear)
 {
@@ -251,6 +260,9 @@ static bool weigh(struct placement_model *model, struct arena *arena, bool *line
 
 bool placement_groups(struct placement_model *model, bool *linear)
 {
+	*linear = false;
+	if (cells_of_sample(model) * (uint64_t)(model->segment_count + 1) > MOST_MEASURED)
+		return true;
 	struct arena *arena = arena_create();
 	const bool weighed = arena != NULL && weigh(model, arena, linear);
 	arena_destroy(arena);

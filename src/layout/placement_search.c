@@ -8,8 +8,8 @@
 #include "layout/placement.h"
 #include "measure/measure.h"
 
-#define MOST_CELLS 1000u       // to be placed: what is reckoned for each grows with them
-#define MOST_BRANCHES 1000000u // at a few microseconds each
+#define MOST_VALUES 1000000u   // that are judged before the search
+#define MOST_BOUNDS 30000000u  // of groups, over all branches: about a second
 
 // What a group's limit makes of each value that placements can bring about, from `lowest` on in steps of a stretch.
 struct scale {
@@ -35,7 +35,7 @@ struct search {
 	struct range *later;          // [group_count × placed_count]: what the types after one add
 	uint32_t *counts, *left, *fewest; // [segment_count]: of a segment; to be placed there and after it in its type
 	size_t *type_of;              // [segment_count]: index into model->placed
-	uint32_t branches;
+	uint64_t bounds;
 	struct placement best, second;
 	uint32_t *best_counts, *second_counts;
 	bool has_best, has_second;
@@ -271,7 +271,8 @@ static bool run(struct search *search)
 	open_segment(search, 0);
 	for (;;) {
 		const struct placement bound = best_of_branch(search, segment);
-		if (++search->branches > MOST_BRANCHES)
+		search->bounds += search->model->group_count;
+		if (search->bounds > MOST_BOUNDS)
 			return false;
 		if (!search->has_second || is_better(&bound, &search->second)) {
 			if (segment < last) {
@@ -288,17 +289,26 @@ static bool run(struct search *search)
 	}
 }
 
-static uint64_t cells_to_place(const struct placement_model *model)
+// Whether the values that the groups can come to are few enough to be judged each.
+static bool few_values(const struct placement_model *model)
 {
-	uint64_t cells = 0;
-	for (size_t placed = 0; placed < model->placed_count; placed++)
-		cells += model->placed[placed].cells;
-	return cells;
+	uint64_t values = 0;
+	for (size_t group = 0; group < model->group_count && values <= MOST_VALUES; group++) {
+		values++;
+		for (size_t placed = 0; placed < model->placed_count; placed++) {
+			const struct range range = range_of_type(&model->groups[group], &model->placed[placed]);
+			values += (uint64_t)((range.high - range.low) / model->plan->clock.stretch_ticks);
+		}
+	}
+	return values <= MOST_VALUES;
 }
 
 bool placement_search(const struct placement_model *model, struct placements *placements)
 {
-	if (model->group_count == 0 || cells_to_place(model) > MOST_CELLS)
+	if (model->group_count == 0)
+		return true;
+	placements->unweighed = !few_values(model);
+	if (placements->unweighed)
 		return true;
 	struct search search = {.model = model, .arena = arena_create(), .best = {.share = FRACTION_ZERO}, .second = {.share = FRACTION_ZERO}};
 	if (search.arena == NULL || !prepare(&search)) {

@@ -39,12 +39,7 @@ static scanlatch_plan *read_set(const char *name, const char *bytes, size_t leng
 	return set != NULL ? plan_of_set(set, messages) : NULL;
 }
 
-scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *messages)
-{
-	return scanlatch_plan_read_file_as(path, source_label(path), messages);
-}
-
-scanlatch_plan *scanlatch_plan_read_file_as(const char *path, const char *name, scanlatch_messages *messages)
+static scanlatch_plan *read_any(const char *path, const char *name, scanlatch_messages *messages, bool as_board)
 {
 	struct arena *arena = arena_create();
 	char *bytes;
@@ -57,10 +52,25 @@ scanlatch_plan *scanlatch_plan_read_file_as(const char *path, const char *name, 
 		if (source_is_set(&seen))
 			plan = read_set(seen.name, bytes, length, messages);
 		else
-			plan = scanlatch_plan_read(seen.name, bytes, length, messages);
+			plan = (as_board ? board_read_text : scanlatch_plan_read)(seen.name, bytes, length, messages);
 	}
 	arena_destroy(arena);
 	return plan;
+}
+
+scanlatch_plan *scanlatch_plan_read_file(const char *path, scanlatch_messages *messages)
+{
+	return read_any(path, source_label(path), messages, false);
+}
+
+scanlatch_plan *scanlatch_plan_read_file_as(const char *path, const char *name, scanlatch_messages *messages)
+{
+	return read_any(path, name, messages, false);
+}
+
+scanlatch_plan *scanlatch_board_read_file(const char *path, scanlatch_messages *messages)
+{
+	return read_any(path, source_label(path), messages, true);
 }
 
 // Intel HEX takes about 2.8 characters a byte; several times the capacity leaves room for short records.

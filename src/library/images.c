@@ -62,6 +62,8 @@ static bool create_tables(scanlatch_images *images, const struct preference *con
 {
 	bool good = true;
 	for (size_t index = 0; index < images->plan->member_count; index++) {
+		if (images->plan->members[index].timeline == NULL)
+			return false;
 		images->members[index].table =
 			table_create_near(images->plan->members[index].timeline, preferences != NULL ? preferences[index] : NULL, diagnostics);
 		good = good && images->members[index].table != NULL;

@@ -54,6 +54,15 @@ struct scanlatch_proofs {
 	struct proofs **proofs;    // [plan->member_count]
 };
 
+struct scanlatch_lift {
+	struct arena *arena;
+	const scanlatch_images *images;
+	struct lift *lift;
+	const char *plan;          // the text
+	const char *const *files;  // [chip_count]: names of the images' files, without folders
+	bool found;
+};
+
 // Takes the bytes of a text as a string of its own; NULL (and the text released) if it failed.
 char *take_string(struct text *text);
 
@@ -80,6 +89,9 @@ const struct source *keep_source(struct arena *arena, const char *name, const ch
 
 // Reads a plan's or set's file into an arena. False after reporting.
 bool read_plan_file(struct arena *arena, const char *path, char **bytes, size_t *length, scanlatch_messages *messages);
+
+// Reads a board from memory, as scanlatch_plan_read does a plan.
+scanlatch_plan *board_read_text(const char *name, const char *bytes, size_t length, scanlatch_messages *messages);
 
 // A set and the plans of its listed banks, which agree.
 struct plan_set {

@@ -69,7 +69,24 @@ static bool load_plan(scanlatch_plan *plan, scanlatch_messages *messages)
 	return plan->members[0].plan != NULL && lay_out(plan, messages->diagnostics);
 }
 
-scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t length, scanlatch_messages *messages)
+// A board has no timeline.
+static bool load_board(scanlatch_plan *plan, scanlatch_messages *messages)
+{
+	struct diagnostics *diagnostics = messages->diagnostics;
+	const struct catalogue *catalogue = catalogue_load(messages->names, diagnostics);
+	if (catalogue == NULL)
+		return false;
+	plan->plan = plan->members[0].plan = board_read(plan->source, catalogue, diagnostics);
+	if (plan->plan == NULL)
+		return false;
+	if (list_banks(plan, 0))
+		return true;
+	diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){0}, "memory is out");
+	return false;
+}
+
+static scanlatch_plan *read_text(const char *name, const char *bytes, size_t length, scanlatch_messages *messages,
+                                 bool (*load)(scanlatch_plan *plan, scanlatch_messages *messages))
 {
 	const struct source *source = keep_source(messages->names, name, bytes, length);
 	scanlatch_plan *plan = source != NULL ? new_plan(1) : NULL;
@@ -78,10 +95,20 @@ scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t 
 		return NULL;
 	}
 	plan->source = source;
-	if (load_plan(plan, messages))
+	if (load(plan, messages))
 		return plan;
 	scanlatch_plan_destroy(plan);
 	return NULL;
+}
+
+scanlatch_plan *scanlatch_plan_read(const char *name, const char *bytes, size_t length, scanlatch_messages *messages)
+{
+	return read_text(name, bytes, length, messages, load_plan);
+}
+
+scanlatch_plan *board_read_text(const char *name, const char *bytes, size_t length, scanlatch_messages *messages)
+{
+	return read_text(name, bytes, length, messages, load_board);
 }
 
 scanlatch_plan *plan_of_set(struct plan_set *set, scanlatch_messages *messages)
@@ -145,6 +172,8 @@ static void keep_both(bool *kept, bool also)
 char *scanlatch_plan_text(const scanlatch_plan *plan, bool *kept, bool *advice_kept)
 {
 	struct text text = {0};
+	if (plan->members[0].timeline == NULL)
+		return NULL;
 	if (plan->set == NULL) {
 		if (!view_check(&text, plan->members[0].timeline, kept, advice_kept))
 			text.failed = true;
@@ -175,6 +204,8 @@ static json_t *member_json(const struct member *member, bool *kept, bool *advice
 
 char *scanlatch_plan_json(const scanlatch_plan *plan, bool *kept, bool *advice_kept)
 {
+	if (plan->members[0].timeline == NULL)
+		return NULL;
 	if (plan->set == NULL)
 		return take_json(view_check_json(plan->members[0].timeline, kept, advice_kept));
 	json_t *object = json_object(), *banks = json_array();

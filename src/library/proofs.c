@@ -62,7 +62,7 @@ static bool compare_members(const scanlatch_proofs *proofs)
 scanlatch_proofs *scanlatch_prove(const scanlatch_images *images)
 {
 	const size_t count = images->plan->member_count;
-	scanlatch_proofs *proofs = malloc(sizeof *proofs);
+	scanlatch_proofs *proofs = images->plan->members[0].timeline != NULL ? malloc(sizeof *proofs) : NULL;
 	if (proofs == NULL)
 		return NULL;
 	proofs->images = images;

@@ -1,24 +1,26 @@
 // The lines without burst, by the standard's numbers, and whether they are those of the standard.
+#include <string.h>
+
 #include "base/arena.h"
 #include "measure/tally.h"
 
-// Places at which fields begin, around the trace: -1 is the last of the lap before.
+// Places at which fields begin, around the trace: -1 is the last of the lap before, and so on in both directions.
 struct zeros {
 	const int64_t *list;
 	int64_t count;
 	int64_t total;
 };
 
-static int64_t zero_at(const struct zeros *zeros, int64_t index)
-{
-	if (index < 0)
-		return zeros->list[zeros->count + index] - zeros->total;
-	return index < zeros->count ? zeros->list[index] : zeros->list[index - zeros->count] + zeros->total;
-}
-
 static int64_t wrapped(const struct zeros *zeros, int64_t index)
 {
-	return index < 0 ? index + zeros->count : index >= zeros->count ? index - zeros->count : index;
+	const int64_t rest = index % zeros->count;
+	return rest < 0 ? rest + zeros->count : rest;
+}
+
+static int64_t zero_at(const struct zeros *zeros, int64_t index)
+{
+	const int64_t field = wrapped(zeros, index);
+	return zeros->list[field] + (index - field) / zeros->count * zeros->total;
 }
 
 struct numbering {
@@ -89,65 +91,58 @@ static void join_ends(struct measurement *result, struct burstless *list, bool j
 	result->burstless_count--;
 }
 
-// The run of lines without burst that each field has; NULL in *runs where one has none, or more than one. False when memory is out.
-static bool runs_of_fields(struct arena *arena, const struct measurement *result, const struct burstless ***runs)
+static unsigned pause_fields(const struct standard *standard)
 {
-	const struct burstless **list = arena_array(arena, result->field_count, sizeof *list);
-	*runs = list;
-	if (list == NULL)
-		return false;
-	for (uint32_t run = 0; run < result->burstless_count && *runs != NULL; run++) {
-		if (list[result->burstless[run].field] != NULL)
-			*runs = NULL;
-		list[result->burstless[run].field] = &result->burstless[run];
-	}
-	for (uint32_t field = 0; field < result->field_count; field++)
-		if (list[field] == NULL)
-			*runs = NULL;
-	return true;
-}
-
-// The lines without burst of a field of the standard's sequence; NULL if it has none.
-static const struct burst_pause *pause_of(const struct standard *standard, size_t field)
-{
-	for (size_t index = 0; index < standard->pause_count; index++)
-		if (standard->pauses[index].field == field + 1)
-			return &standard->pauses[index];
-	return NULL;
-}
-
-static size_t fields_of_sequence(const struct standard *standard)
-{
-	size_t fields = 0;
+	unsigned fields = 0;
 	for (size_t index = 0; index < standard->pause_count; index++)
 		if (standard->pauses[index].field > fields)
 			fields = standard->pauses[index].field;
 	return fields;
 }
 
-// Whether the frame, as it repeats, has the standard's sequence from one of its fields on.
-static bool sequence_matches(const struct measurement *result, const struct standard *standard, const struct burstless *const *runs,
-                             size_t turn)
+static size_t pauses_of(const struct standard *standard, uint64_t field)
 {
-	const size_t sequence = fields_of_sequence(standard);
-	for (size_t step = 0; step < sequence * result->field_count; step++) {
-		const struct burst_pause *pause = pause_of(standard, (step + turn) % sequence);
-		const struct burstless *run = runs[step % result->field_count];
-		if (pause == NULL || run->first_line != pause->first_line || run->last_line != pause->last_line)
-			return false;
-	}
-	return sequence > 0;
+	size_t count = 0;
+	for (size_t index = 0; index < standard->pause_count; index++)
+		count += standard->pauses[index].field == field;
+	return count;
 }
 
-// A frame may begin with any field of the sequence. False when memory is out.
-static bool judge_pauses(struct arena *arena, struct measurement *result, const struct standard *standard)
+static bool is_pause(const struct standard *standard, uint64_t field, const struct burstless *run)
 {
-	const struct burstless **runs;
-	if (!runs_of_fields(arena, result, &runs))
-		return false;
-	for (size_t turn = 0; runs != NULL && !result->pauses_kept && turn < fields_of_sequence(standard); turn++)
-		result->pauses_kept = result->numbered && sequence_matches(result, standard, runs, turn);
-	return true;
+	for (size_t index = 0; index < standard->pause_count; index++) {
+		const struct burst_pause *pause = &standard->pauses[index];
+		if (pause->field == field && pause->first_line == run->first_line && pause->last_line == run->last_line)
+			return true;
+	}
+	return false;
+}
+
+// Whether the frame, as it repeats, has the standard's sequence if it begins with its field turn + 1: every run is a pause of its field,
+// and there are as many runs as pauses, in each lap until both come round. Runs differ, and so do pauses.
+static bool runs_match(const struct measurement *result, const struct standard *standard, uint64_t turn)
+{
+	const unsigned sequence = pause_fields(standard);
+	bool match = true;
+	for (uint64_t lap = 0; lap < sequence && match; lap++) {
+		const uint64_t first = turn + lap * result->field_count;
+		size_t wanted = 0;
+		for (uint32_t field = 0; field < result->field_count; field++)
+			wanted += pauses_of(standard, (first + field) % sequence + 1);
+		match = wanted == result->burstless_count;
+		for (uint32_t run = 0; run < result->burstless_count && match; run++)
+			match = is_pause(standard, (first + result->burstless[run].field) % sequence + 1, &result->burstless[run]);
+	}
+	return match;
+}
+
+// A frame may begin with any field of the standard's sequence.
+static bool pauses_match(const struct measurement *result, const struct standard *standard)
+{
+	for (uint32_t turn = 0; turn < pause_fields(standard); turn++)
+		if (runs_match(result, standard, turn))
+			return true;
+	return false;
 }
 
 // The burstless lines of each field as an item of its own, and where the first of them is.
@@ -159,16 +154,27 @@ static void tally_fields(struct instrument *instrument, const struct measured_fi
 	}
 }
 
+// The runs, with no more room than they need. NULL when memory is out.
+static const struct burstless *kept_runs(const struct instrument *instrument, const struct burstless *list, uint32_t count)
+{
+	struct burstless *kept = arena_array(instrument->results, count, sizeof *kept);
+	if (kept != NULL && count > 0)
+		memcpy(kept, list, count * sizeof *kept);
+	return kept;
+}
+
 bool measure_burstless(struct instrument *instrument, struct measurement *result)
 {
 	const struct raster *raster = &instrument->raster;
-	struct measured_field *fields = arena_array(instrument->arena, raster->field_count, sizeof *fields);
+	struct measured_field *fields = arena_array(instrument->results, raster->field_count, sizeof *fields);
 	struct burstless *list = arena_array(instrument->arena, raster->line_count, sizeof *list);
 	struct numbering numbering;
 	if (fields == NULL || list == NULL || !numbering_start(instrument, &numbering))
 		return false;
-	for (uint32_t index = 0; index < raster->field_count; index++)
+	for (uint32_t index = 0; index < raster->field_count; index++) {
 		fields[index].at_half = raster->fields[index].at_half;
+		fields[index].cell = raster->fields[index].cell;
+	}
 	bool joins = false;
 	for (uint32_t index = 0; raster->field_count > 0 && index < raster->line_count; index++) {
 		const int64_t place = raster->lines[index].place;
@@ -184,7 +190,10 @@ bool measure_burstless(struct instrument *instrument, struct measurement *result
 	result->fields = fields;
 	result->field_count = raster->field_count;
 	result->numbered = numbering.first_number > 0;
-	result->burstless = list;
+	result->burstless = kept_runs(instrument, list, result->burstless_count);
+	if (result->burstless == NULL)
+		return false;
+	result->pauses_kept = result->numbered && pauses_match(result, instrument->standard);
 	tally_fields(instrument, fields);
-	return judge_pauses(instrument->arena, result, instrument->standard);
+	return true;
 }

@@ -35,11 +35,10 @@ static void measure_pulses(struct instrument *instrument)
 	}
 }
 
-// From the place of a pulse to a later one's.
+// From the place of a pulse to a later one, which may be past the trace's end.
 static int64_t places_between(const struct raster *raster, uint32_t from, int64_t place)
 {
-	const int64_t places = (place - raster->places[from]) % raster->place_total;
-	return places < 0 ? places + raster->place_total : places;
+	return (place - raster->places[from]) % raster->place_total;
 }
 
 // From the first equalising pulse after the broad ones to half a line after the last: where the next pulse comes depends on the field.

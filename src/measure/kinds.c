@@ -97,16 +97,17 @@ static void kinds_by_width(struct raster *raster, int64_t normal)
 	}
 }
 
-static bool is_near(const struct raster *raster, uint32_t index)
+static bool half_a_line_on(const struct raster *raster, uint32_t index)
 {
-	return ticks_to_next(raster->trace, index) * 4 < raster->line_ticks * 3;
+	const int64_t twice = 2 * ticks_to_next(raster->trace, index);
+	return twice * 8 >= raster->line_ticks * 7 && twice * 8 <= raster->line_ticks * 9;
 }
 
 // Whether a pulse, next to a broad or equalising one, is equalising too: narrow, or amid pulses half a line apart.
 static bool is_equalising(const struct raster *raster, uint32_t index)
 {
 	if (raster->kinds[index] == PULSE_NORMAL)
-		return is_near(raster, index) && is_near(raster, pulse_before(raster->trace, index));
+		return half_a_line_on(raster, index) && half_a_line_on(raster, pulse_before(raster->trace, index));
 	return raster->kinds[index] == PULSE_STRAY;
 }
 
@@ -148,22 +149,33 @@ static void find_strays(struct raster *raster)
 		}
 }
 
+// The period, and of composite sync the kinds by width. `ticks` has room for as many lengths as there are pulses.
+static void measure_pulses(struct raster *raster, int64_t *ticks)
+{
+	const uint32_t count = sync_of(raster)->count;
+	for (uint32_t index = 0; index < count; index++)
+		ticks[index] = ticks_to_next(raster->trace, index);
+	raster->line_ticks = heaviest(ticks, count, true);
+	if (!raster->trace->separate)
+		kinds_by_width(raster, normal_width(raster, ticks));
+}
+
 bool raster_kinds(struct raster *raster)
 {
-	const struct pulses *sync = sync_of(raster);
-	int64_t *ticks = arena_array(raster->arena, sync->count, sizeof *ticks);
-	raster->kinds = arena_array(raster->arena, sync->count, sizeof *raster->kinds);
-	if (ticks == NULL || raster->kinds == NULL)
+	const uint32_t count = sync_of(raster)->count;
+	struct arena *scratch = arena_create();
+	int64_t *ticks = scratch != NULL ? arena_array(scratch, count, sizeof *ticks) : NULL;
+	raster->kinds = arena_array(raster->arena, count, sizeof *raster->kinds);
+	const bool measured = ticks != NULL && raster->kinds != NULL;
+	if (measured)
+		measure_pulses(raster, ticks);
+	arena_destroy(scratch);
+	if (!measured)
 		return false;
-	for (uint32_t index = 0; index < sync->count; index++)
-		ticks[index] = ticks_to_next(raster->trace, index);
-	raster->line_ticks = heaviest(ticks, sync->count, true);
-	if (!raster->trace->separate) {
-		kinds_by_width(raster, normal_width(raster, ticks));
+	if (!raster->trace->separate)
 		find_equalising(raster);
-	}
 	find_strays(raster);
-	for (uint32_t index = 0; index < sync->count; index++)
+	for (uint32_t index = 0; index < count; index++)
 		if (raster->kinds[index] == PULSE_STRAY && raster->stray_count++ == 0)
 			raster->first_stray = index;
 	return true;

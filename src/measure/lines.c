@@ -9,7 +9,7 @@ static void note_instance(struct instrument *instrument, struct measured_instanc
 	struct measured_instances *all = instrument->instances;
 	if (all->count == all->capacity) {
 		const size_t capacity = all->capacity == 0 ? 1024 : 2 * all->capacity;
-		struct measured_instance *list = arena_array(instrument->arena, capacity, sizeof *list);
+		struct measured_instance *list = arena_array(instrument->results, capacity, sizeof *list);
 		instrument->out_of_memory = instrument->out_of_memory || list == NULL;
 		if (list == NULL)
 			return;

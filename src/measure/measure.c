@@ -81,13 +81,15 @@ static const char *missing_signal(const struct instrument *instrument, enum need
 
 bool item_is_of_line(enum limit_item item)
 {
-	return rows[item].base == BASE_TIME || (rows[item].base == BASE_CYCLES && item != ITEM_CYCLES_PER_LINE);
+	return rows[item].base == BASE_TIME || rows[item].base == BASE_CYCLES || item == ITEM_LINE_RATE;
 }
 
-// Raw values are half ticks.
+// Raw values are half ticks; of a rate the ticks of its period.
 bool measured_value(const struct clock *clock, enum limit_item item, int64_t raw, struct fraction *value)
 {
 	struct fraction half_ticks, cycles_per_tick;
+	if (rows[item].base == BASE_RATE)
+		return fraction_divide(clock->master_hz, fraction_whole(raw), value);
 	if (!fraction_make(raw, 2, &half_ticks))
 		return false;
 	if (rows[item].base == BASE_TIME)
@@ -101,14 +103,13 @@ static bool value_of(const struct instrument *instrument, enum limit_item item, 
 {
 	const struct clock *clock = &instrument->trace->plan->clock;
 	switch (rows[item].base) {
-	case BASE_RATE:
-		return fraction_divide(clock->master_hz, fraction_whole(raw), value);
 	case BASE_LINES:
 		return fraction_make(raw, 4 * instrument->raster.line_ticks, value);
 	case BASE_COUNT:
 	case BASE_CLOCK:
 		*value = fraction_whole(raw);
 		return true;
+	case BASE_RATE:
 	case BASE_TIME:
 	case BASE_CYCLES:
 		break;
@@ -178,15 +179,18 @@ static void settle(const struct instrument *instrument, struct measurement *resu
 	settle_clock(instrument->trace->plan, result->items);
 	result->separate = instrument->trace->separate;
 	result->frames = instrument->trace->laps;
-	result->strays = instrument->raster.stray_count;
+	// Of one frame: each lap has the same.
+	result->strays = (instrument->raster.stray_count + result->frames - 1) / result->frames;
 	if (result->strays > 0)
 		result->stray_cell = instrument->trace->of[TRACED_SYNC].list[instrument->raster.first_stray].start_cell;
 }
 
-// Traces so many laps and finds the raster there.
+// Traces so many laps and finds the raster there, in an arena of its own. False when memory is out.
 static bool look(struct instrument *instrument, const struct recording *recording, uint32_t laps, const char **flaw)
 {
-	instrument->trace = trace_make(instrument->arena, recording, laps);
+	arena_destroy(instrument->arena);
+	instrument->arena = arena_create();
+	instrument->trace = instrument->arena != NULL ? trace_make(instrument->arena, recording, laps) : NULL;
 	return instrument->trace != NULL && raster_find(instrument->arena, instrument->trace, &instrument->raster, flaw);
 }
 
@@ -199,17 +203,9 @@ static bool look_well(struct instrument *instrument, const struct recording *rec
 	       (*flaw != NULL || !raster_is_odd(&instrument->raster) || look(instrument, &preferring, 2, flaw));
 }
 
-bool measure_instances(struct arena *arena, const struct recording *recording, const struct standard *standard,
-                       struct measured_instances *instances)
+static bool note_instances(struct instrument *instrument, const struct recording *recording)
 {
 	const char *flaw;
-	struct instrument *instrument = arena_alloc(arena, sizeof *instrument);
-	*instances = (struct measured_instances){NULL, 0, 0};
-	if (instrument == NULL)
-		return false;
-	instrument->arena = arena;
-	instrument->standard = standard;
-	instrument->instances = instances;
 	if (!look_well(instrument, recording, &flaw))
 		return false;
 	if (flaw != NULL)
@@ -221,16 +217,29 @@ bool measure_instances(struct arena *arena, const struct recording *recording, c
 	return !instrument->out_of_memory;
 }
 
+bool measure_instances(struct arena *arena, const struct recording *recording, const struct standard *standard,
+                       struct measured_instances *instances)
+{
+	struct instrument instrument = {.results = arena, .standard = standard, .instances = instances};
+	*instances = (struct measured_instances){NULL, 0, 0};
+	const bool noted = note_instances(&instrument, recording);
+	arena_destroy(instrument.arena);
+	return noted;
+}
+
+static bool measure_all(struct instrument *instrument, const struct recording *recording, struct measurement *result)
+{
+	if (!look_well(instrument, recording, &result->flaw) || (result->flaw == NULL && !measure_raster(instrument, result)))
+		return false;
+	settle(instrument, result);
+	return true;
+}
+
 const struct measurement *measure_recording(struct arena *arena, const struct recording *recording, const struct standard *standard)
 {
 	struct measurement *result = arena_alloc(arena, sizeof *result);
-	struct instrument *instrument = arena_alloc(arena, sizeof *instrument);
-	if (result == NULL || instrument == NULL)
-		return NULL;
-	instrument->arena = arena;
-	instrument->standard = standard;
-	if (!look_well(instrument, recording, &result->flaw) || (result->flaw == NULL && !measure_raster(instrument, result)))
-		return NULL;
-	settle(instrument, result);
-	return result;
+	struct instrument instrument = {.results = arena, .standard = standard};
+	const bool measured = result != NULL && measure_all(&instrument, recording, result);
+	arena_destroy(instrument.arena);
+	return measured ? result : NULL;
 }

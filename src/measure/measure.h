@@ -25,6 +25,7 @@ struct burstless {
 };
 
 struct measured_field {
+	uint32_t cell;                 // of the frame, that begins at 0V
 	bool at_half;                  // 0V is half way through a line
 	int64_t burstless_lines;
 };
@@ -34,7 +35,7 @@ struct measurement {
 	struct measured items[ITEM_COUNT];
 	bool separate;                 // sync is horizontal and vertical
 	uint32_t frames;               // that were measured: 2 if the frame has an odd number of half lines
-	uint64_t strays;               // sync pulses that belong to nothing, in those frames
+	uint64_t strays;               // sync pulses of a frame that belong to nothing
 	uint32_t stray_cell;           // where the first begins
 	const struct measured_field *fields; // [field_count], from the first 0V after the frame's first normal line
 	uint32_t field_count;
@@ -60,7 +61,7 @@ struct measured_instances {
 	size_t count, capacity;
 };
 
-// Every value that a line shows of items that are times, or subcarrier cycles of burst, in a frame, always in the same order. An
+// Every value that a line shows of items that are times or subcarrier cycles, and of the line rate, in a frame, always in the same order. An
 // empty list if there is no raster in the frame. False when memory is out; the list belongs to the arena.
 bool measure_instances(struct arena *arena, const struct recording *recording, const struct standard *standard,
                        struct measured_instances *instances);

@@ -29,7 +29,8 @@ struct line_view {
 };
 
 struct instrument {
-	struct arena *arena;
+	struct arena *arena;           // its own, gone when all is measured
+	struct arena *results;         // the caller's
 	const struct standard *standard;
 	const struct trace *trace;
 	struct raster raster;
@@ -40,7 +41,7 @@ struct instrument {
 	bool out_of_memory;            // there was no room for an instance
 };
 
-// True for times, and for the cycles of burst. Cannot fail.
+// True for times, cycles and the line rate. Cannot fail.
 bool item_is_of_line(enum limit_item item);
 
 void tally_add(struct instrument *instrument, enum limit_item item, int64_t raw, uint32_t from_cell, uint32_t to_cell);

@@ -26,6 +26,10 @@ enum expression_status {
 	EXPRESSION_OVERFLOW,         // evaluation: an intermediate exceeds 64 bits
 };
 
+// The form of an expression as a regular expression; whether its parentheses close is left out.
+#define OPERAND_PATTERN "(0x[0-9a-fA-F]+|[0-9]+|line|cell|col|row)"
+#define EXPRESSION_PATTERN "[ (]*" OPERAND_PATTERN "[ )]*([-+*/%][ (]*" OPERAND_PATTERN "[ )]*)*"
+
 const char *expression_status_words(enum expression_status status);
 
 // Compiles `text` (no recursion) into the arena. Precedence: * / % before + -, left to right; a unary minus is not

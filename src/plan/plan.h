@@ -237,6 +237,9 @@ struct plan {
 // Reads a plan from a source whose bytes are loaded; the source must outlive the plan. Reports every error it can.
 // Returns NULL if there was any error (or memory is out); otherwise the plan, freed with plan_destroy.
 struct plan *plan_read(const struct source *source, const struct catalogue *catalogue, struct diagnostics *diagnostics);
+// The same for a board, a file with everything but lines and frame: its plan has no line types and no blocks. A plan is a board
+// too; its lines and frame are not read, but its line types are counted for the kind's bits.
+struct plan *board_read(const struct source *source, const struct catalogue *catalogue, struct diagnostics *diagnostics);
 void plan_destroy(struct plan *plan);
 
 // Signals with origin FROM_DATA, in the order of `signals`; the word is next (or clear), then these.

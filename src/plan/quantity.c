@@ -172,6 +172,15 @@ size_t dimension_units(enum dimension dimension, const char **names)
 	return count;
 }
 
+size_t dimension_all_units(enum dimension dimension, const char **names)
+{
+	size_t count = 0;
+	for (size_t index = 0; index < sizeof units / sizeof units[0]; index++)
+		if (units[index].dimension == dimension)
+			names[count++] = units[index].name;
+	return count;
+}
+
 static char lower_case(char byte)
 {
 	return byte >= 'A' && byte <= 'Z' ? (char)(byte - 'A' + 'a') : byte;

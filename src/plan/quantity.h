@@ -47,6 +47,9 @@ const char *quantity_status_words(enum quantity_status status);
 // Puts the names of the units of a dimension, for messages, the plural of those that have one; returns how many. Cannot fail.
 size_t dimension_units(enum dimension dimension, const char **names);
 
+// The same of all its units, singular and plural.
+size_t dimension_all_units(enum dimension dimension, const char **names);
+
 // The unit among the candidates that a text with an unknown one seems to mean: in other case ("MHZ"), or with the micro
 // sign for us. NULL if none. Cannot fail.
 const char *unit_meant(const char *text, const char *const *names, size_t count);
@@ -55,6 +58,7 @@ const char *unit_meant(const char *text, const char *const *names, size_t count)
 bool whole_number_parse(const char *text, int64_t *result);
 
 // Reads "hi..lo" or "n" (decimal, each at most 1000) with hi >= lo. False if malformed.
+#define BIT_RANGE_PATTERN "[0-9]+(\\.\\.[0-9]+)?" // the same as a regular expression, but for the order
 bool bit_range_parse(const char *text, unsigned *high, unsigned *low);
 
 // Reads exactly "true" or "false".

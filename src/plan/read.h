@@ -5,6 +5,7 @@
 #include "catalogue/catalogue.h"
 #include "plan/characters.h"
 #include "plan/document.h"
+#include "plan/grammar.h"
 #include "plan/plan.h"
 #include "plan/quantity.h"
 #include "plan/set.h"
@@ -19,6 +20,7 @@ struct reader {
 	bool machine_known;  // the line stage's state bits and fields are known: codes and holds can be checked
 	bool signals_known;  // every signal was read without errors: the data signals are known
 	bool words_known;    // each stage's state, kind and way to advance are known: with the signals, so is its word
+	bool board;          // what is read is a board: lines and frame may be left out and are passed over
 	const struct node *kind;       // of a line-frame machine; NULL if the plan does not say it
 	const struct set *set;         // that the plan is of; NULL if it is of none
 	size_t bank;                   // of the set's listed banks
@@ -28,23 +30,11 @@ struct reader {
 	size_t region_count;           // over all line types, kept within LIMIT_REGIONS
 };
 
-// KEY_UNUSED: a slot of the table that this kind of mapping does not have. KEY_ELSEWHERE: the same, but report_elsewhere
-// has told of it.
-enum key_need { KEY_OPTIONAL, KEY_REQUIRED, KEY_UNUSED, KEY_ELSEWHERE };
-
-// A key of a mapping. The tables of keys are the language's grammar.
-struct key {
-	const char *name;
-	enum key_need need;
-};
-
 // A key that belongs to another place, and a hint that says to which.
 struct stray_key {
 	const char *name;
 	const char *hint;
 };
-
-#define COUNT_OF(array) (sizeof(array) / sizeof((array)[0]))
 
 // Sorts a mapping's values into values[count] by the table (NULL: absent); reports unknown and missing keys. `what` names the mapping in
 // messages ("a region"). False, with values all NULL, if node is not a mapping. Where a key stands that belongs elsewhere, none is
@@ -80,6 +70,16 @@ bool read_quantity(struct reader *reader, const struct node *node, const char *w
 bool read_bit_count(struct reader *reader, const struct node *node, const char *what, int64_t least, int64_t most, unsigned *bits);
 // A time in seconds; `positive`: zero is an error. Never negative.
 bool read_time(struct reader *reader, const struct node *node, const char *what, bool positive, struct fraction *seconds);
+
+// The same by the key whose value the node is; NULL is no value: false, with nothing reported. Choices, ranges and units are those of
+// its shape, which must be of the kind.
+bool key_whole(struct reader *reader, const struct key *key, const struct node *node, int64_t *result);
+bool key_truth(struct reader *reader, const struct key *key, const struct node *node, bool *result);
+bool key_choice(struct reader *reader, const struct key *key, const struct node *node, size_t *result);
+bool key_quantity(struct reader *reader, const struct key *key, const struct node *node, struct quantity *result);
+bool key_bit_count(struct reader *reader, const struct key *key, const struct node *node, unsigned *bits);
+bool key_time(struct reader *reader, const struct key *key, const struct node *node, struct fraction *seconds);
+
 // A bit range within a word of `bits` bits.
 bool read_bits(struct reader *reader, const struct node *node, const char *text, const char *what, unsigned bits, unsigned *high,
                unsigned *low);

@@ -6,14 +6,39 @@
 
 enum { SHORT_PART, SHORT_SPEED, SHORT_LINE, SHORT_FRAME, SHORT_KEYS };
 
+#define PART_KEY {"part", KEY_REQUIRED, &part_name_shape, "A part of the catalogue, or one of the plan's parts"}
+#define SPEED_KEY {"speed", KEY_OPTIONAL, &time_shape, "Its access time, as 150 ns; its slowest grade if left out"}
+
+static const struct shape part_name_shape = {.kind = SHAPE_LISTED, .listed = LISTED_MEMORIES, .own_too = true};
+
 static const struct key part_and_speed_keys[SHORT_KEYS] = {
-	[SHORT_PART] = {"part", KEY_REQUIRED}, [SHORT_SPEED] = {"speed", KEY_OPTIONAL},
-	[SHORT_LINE] = {"line", KEY_ELSEWHERE}, [SHORT_FRAME] = {"frame", KEY_ELSEWHERE},
+	[SHORT_PART] = PART_KEY,
+	[SHORT_SPEED] = SPEED_KEY,
+	[SHORT_LINE] = {"line", KEY_ELSEWHERE, NULL, NULL},
+	[SHORT_FRAME] = {"frame", KEY_ELSEWHERE, NULL, NULL},
+};
+
+static const struct shape part_and_speed_shape = {
+	.kind = SHAPE_MAPPING,
+	.title = "straight chips",
+	.about = "As many chips of a part as the word needs, wired straight",
+	.keys = part_and_speed_keys,
+	.key_count = SHORT_KEYS,
 };
 
 static const struct key two_stages_keys[SHORT_KEYS] = {
-	[SHORT_PART] = {"part", KEY_ELSEWHERE}, [SHORT_SPEED] = {"speed", KEY_ELSEWHERE},
-	[SHORT_LINE] = {"line", KEY_REQUIRED},  [SHORT_FRAME] = {"frame", KEY_REQUIRED},
+	[SHORT_PART] = {"part", KEY_ELSEWHERE, NULL, NULL},
+	[SHORT_SPEED] = {"speed", KEY_ELSEWHERE, NULL, NULL},
+	[SHORT_LINE] = {"line", KEY_REQUIRED, &part_and_speed_shape, "The chips of the line stage"},
+	[SHORT_FRAME] = {"frame", KEY_REQUIRED, &part_and_speed_shape, "The chips of the frame stage"},
+};
+
+static const struct shape two_stages_shape = {
+	.kind = SHAPE_MAPPING,
+	.title = "straight chips of two stages",
+	.about = "The chips of each stage of a line-frame machine, wired straight",
+	.keys = two_stages_keys,
+	.key_count = SHORT_KEYS,
 };
 
 #define ONE_STAGE "a loop machine has one stage: write { part: ..., speed: ... }, or make it form: line-frame"
@@ -26,14 +51,53 @@ static const struct stray_key line_frame_strays[] = {{"part", TWO_STAGES}, {"spe
 
 enum { CHIP_LABEL, CHIP_PART, CHIP_SPEED, CHIP_ADDRESS, CHIP_DATA, CHIP_STAGE, CHIP_KEYS };
 
+#define LONGEST_LABEL 100
+#define LETTERS "ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz"
+
+static const struct shape label_shape = {
+	.kind = SHAPE_TEXT, .pattern = "[A-Za-z0-9_-]+", .most = LONGEST_LABEL, .also = ALSO_NUMBER | ALSO_TRUTH,
+};
+
+#define LONG_FORM_KEYS \
+	[CHIP_LABEL] = {"label", KEY_REQUIRED, &label_shape, "What the chip is called, on the board and in file names"}, \
+	[CHIP_PART] = PART_KEY, \
+	[CHIP_SPEED] = SPEED_KEY, \
+	[CHIP_ADDRESS] = {"address", KEY_REQUIRED, LIST_OF(&address_wire_shape, 0, LIMIT_ADDRESS_PINS), \
+	                  "What drives each address pin, A0 first: state.N, kind.N, bank.N, low, high, or - for an open pin"}, \
+	[CHIP_DATA] = {"data", KEY_REQUIRED, LIST_OF(&data_wire_shape, 0, LIMIT_DATA_PINS), \
+	               "What each data pin carries, D0 first: next.N, kind.N, step, clear, a signal, or - for an open pin"}
+
 static const struct key long_keys[CHIP_KEYS] = {
-	[CHIP_LABEL] = {"label", KEY_REQUIRED},     [CHIP_PART] = {"part", KEY_REQUIRED}, [CHIP_SPEED] = {"speed", KEY_OPTIONAL},
-	[CHIP_ADDRESS] = {"address", KEY_REQUIRED}, [CHIP_DATA] = {"data", KEY_REQUIRED}, [CHIP_STAGE] = {"stage", KEY_OPTIONAL},
+	LONG_FORM_KEYS,
+	[CHIP_STAGE] = {"stage", KEY_OPTIONAL, &stage_word_shape, "The stage that the chip belongs to, of a line-frame machine's"},
 };
 
 static const struct key loop_long_keys[CHIP_KEYS] = {
-	[CHIP_LABEL] = {"label", KEY_REQUIRED},     [CHIP_PART] = {"part", KEY_REQUIRED}, [CHIP_SPEED] = {"speed", KEY_OPTIONAL},
-	[CHIP_ADDRESS] = {"address", KEY_REQUIRED}, [CHIP_DATA] = {"data", KEY_REQUIRED}, [CHIP_STAGE] = {"stage", KEY_ELSEWHERE},
+	LONG_FORM_KEYS,
+	[CHIP_STAGE] = {"stage", KEY_ELSEWHERE, NULL, NULL},
+};
+
+#define CHIPS_ABOUT "Chips one by one, with what is wired to each of their pins"
+#define CHIPS_OF(shape) \
+	SHAPE(.kind = SHAPE_LIST, .about = CHIPS_ABOUT, .item = &(shape), .least = 1, .most = LIMIT_CHIPS)
+
+static const struct shape chip_shape = {.kind = SHAPE_MAPPING, .title = "chip", .keys = long_keys, .key_count = CHIP_KEYS};
+static const struct shape loop_chip_shape = {
+	.kind = SHAPE_MAPPING, .title = "chip of a loop machine", .keys = loop_long_keys, .key_count = CHIP_KEYS,
+};
+// read_chip_stage looks for the stage.
+static const struct shape staged_chip_shape = {
+	.kind = SHAPE_MAPPING, .title = "chip of a line-frame machine", .keys = long_keys, .key_count = CHIP_KEYS,
+	.group = {.first = CHIP_STAGE, .count = 1, .one = true},
+};
+static const struct shape *const chips_shapes[] = {&part_and_speed_shape, &two_stages_shape, CHIPS_OF(chip_shape)};
+
+const struct shape chips_shape = {
+	.kind = SHAPE_EITHER,
+	.shapes = chips_shapes,
+	.shape_count = COUNT_OF(chips_shapes),
+	.in_loop = EITHER(&part_and_speed_shape, CHIPS_OF(loop_chip_shape)),
+	.in_line_frame = EITHER(&two_stages_shape, CHIPS_OF(staged_chip_shape)),
 };
 
 static const struct stray_key loop_long_strays[] = {
@@ -138,10 +202,10 @@ static bool read_label(struct reader *reader, const struct node *node, struct ch
 	const char *text;
 	if (node == NULL || !read_scalar(reader, node, "label", &text))
 		return false;
-	const size_t good = strspn(text, "ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz0123456789_-");
-	if (good != strlen(text) || good > 100) {
-		diagnose(reader->diagnostics, RULE_BAD_NAME, node->place, "label \"%s\": wanted 1 to 100 letters, digits, _ and -",
-		         SHORT(text));
+	const size_t good = strspn(text, LETTERS "0123456789_-");
+	if (good != strlen(text) || good > LONGEST_LABEL) {
+		diagnose(reader->diagnostics, RULE_BAD_NAME, node->place, "label \"%s\": wanted 1 to %d letters, digits, _ and -",
+		         SHORT(text), LONGEST_LABEL);
 		return false;
 	}
 	for (size_t other = 0; other < index; other++)

@@ -4,17 +4,34 @@
 
 enum { CLOCK_MASTER, CLOCK_ACCURACY, CLOCK_DOT, CLOCK_CELL, CLOCK_STRETCH, CLOCK_SUBCARRIER, CLOCK_PHASE, CLOCK_KEYS };
 
-static const struct key clock_keys[CLOCK_KEYS] = {
-	[CLOCK_MASTER] = {"master", KEY_REQUIRED},        [CLOCK_ACCURACY] = {"accuracy", KEY_OPTIONAL},
-	[CLOCK_DOT] = {"dot", KEY_OPTIONAL},              [CLOCK_CELL] = {"cell", KEY_REQUIRED},
-	[CLOCK_STRETCH] = {"stretch", KEY_OPTIONAL},      [CLOCK_SUBCARRIER] = {"subcarrier", KEY_OPTIONAL},
-	[CLOCK_PHASE] = {"phase", KEY_OPTIONAL},
+static const struct shape frequency_shape = {.kind = SHAPE_QUANTITY, .dimensions = IN_HERTZ, .sign = QUANTITY_POSITIVE};
+static const struct shape length_shape = {.kind = SHAPE_QUANTITY, .dimensions = IN_TICKS | IN_DOTS, .sign = QUANTITY_POSITIVE};
+static const struct shape divided_shape = {.kind = SHAPE_TEXT, .pattern = "master *(/ *" ABOVE_ZERO_PATTERN ")?"};
+static const struct shape phase_shape = {
+	.kind = SHAPE_TEXT,
+	.pattern = "free|every +(0*[1-9][0-9]* +)?(lines?|frames?)",
 };
+
+static const struct key clock_keys[CLOCK_KEYS] = {
+	[CLOCK_MASTER] = {"master", KEY_REQUIRED, &frequency_shape, "The master clock, exactly; one period of it is a tick"},
+	[CLOCK_ACCURACY] = {"accuracy", KEY_OPTIONAL, QUANTITY(IN_PPM, QUANTITY_NOT_NEGATIVE), "Of the crystal, in ppm; reported"},
+	[CLOCK_DOT] = {"dot", KEY_OPTIONAL, QUANTITY(IN_TICKS, QUANTITY_POSITIVE), "A picture element, in ticks; 1 tick if left out"},
+	[CLOCK_CELL] = {"cell", KEY_REQUIRED, &length_shape, "A normal cell, one step of the sequencer, in dots or ticks"},
+	[CLOCK_STRETCH] = {"stretch", KEY_OPTIONAL, &length_shape,
+	                   "What a stretched cell is longer, in dots or ticks; leave it out if there is none"},
+	[CLOCK_SUBCARRIER] = {"subcarrier", KEY_OPTIONAL, EITHER(&frequency_shape, &divided_shape),
+	                      "The colour subcarrier, a frequency or master / N; leave it out for monochrome"},
+	[CLOCK_PHASE] = {"phase", KEY_OPTIONAL, &phase_shape,
+	                 "After how long the subcarrier must be back in step: every line, every N lines, every frame, every N frames, or "
+	                 "free, what it is when left out"},
+};
+
+const struct shape clock_shape = {.kind = SHAPE_MAPPING, .title = "clock", .keys = clock_keys, .key_count = CLOCK_KEYS};
 
 static bool read_frequency(struct reader *reader, const struct node *node, const char *what, struct fraction *hertz)
 {
 	struct quantity quantity;
-	if (!read_quantity(reader, node, what, 1u << DIMENSION_FREQUENCY, &quantity))
+	if (!read_quantity(reader, node, what, frequency_shape.dimensions, &quantity))
 		return false;
 	if (quantity.value.numerator <= 0) {
 		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "%s: must be above zero, found \"%s\"", what,
@@ -28,9 +45,9 @@ static bool read_frequency(struct reader *reader, const struct node *node, const
 // A length of the clock in whole ticks. Dots are allowed where dot_ticks > 0.
 static bool read_ticks(struct reader *reader, const struct node *node, const char *what, int64_t dot_ticks, int64_t *ticks)
 {
-	const unsigned dots = dot_ticks > 0 ? 1u << DIMENSION_DOTS : 0;
+	const unsigned dots = dot_ticks > 0 ? IN_DOTS : 0;
 	struct quantity quantity;
-	if (!read_quantity(reader, node, what, 1u << DIMENSION_TICKS | dots, &quantity))
+	if (!read_quantity(reader, node, what, IN_TICKS | dots, &quantity))
 		return false;
 	struct fraction value = quantity.value;
 	if (quantity.dimension == DIMENSION_DOTS && !fraction_multiply(value, fraction_whole(dot_ticks), &value))
@@ -136,7 +153,7 @@ static void read_accuracy(struct reader *reader, const struct node *node)
 {
 	struct clock *clock = &reader->plan->clock;
 	struct quantity quantity;
-	if (!read_quantity(reader, node, "accuracy", 1u << DIMENSION_PPM, &quantity))
+	if (!key_quantity(reader, &clock_keys[CLOCK_ACCURACY], node, &quantity))
 		return;
 	if (quantity.value.numerator < 0 || fraction_compare(quantity.value, fraction_whole(1000000)) >= 0) {
 		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place, "accuracy: wanted 0 to 1000000 ppm, found \"%s\"",
@@ -171,8 +188,7 @@ void read_clock(struct reader *reader, const struct node *node)
 		read_ticks(reader, values[CLOCK_STRETCH], "stretch", clock->dot_ticks, &clock->stretch_ticks);
 	if (values[CLOCK_SUBCARRIER] != NULL && master_known)
 		clock->has_subcarrier = read_subcarrier(reader, values[CLOCK_SUBCARRIER], &clock->subcarrier_hz);
-	if (values[CLOCK_ACCURACY] != NULL)
-		read_accuracy(reader, values[CLOCK_ACCURACY]);
+	read_accuracy(reader, values[CLOCK_ACCURACY]);
 	if (values[CLOCK_PHASE] != NULL)
 		read_phase(reader, values[CLOCK_PHASE], values[CLOCK_SUBCARRIER] != NULL ||
 		                                                key_is_misspelt(node, clock_keys, CLOCK_KEYS, CLOCK_SUBCARRIER));

@@ -5,9 +5,13 @@
 enum { BLOCK_REPEAT, BLOCK_LINE, BLOCK_KEYS };
 
 static const struct key block_keys[BLOCK_KEYS] = {
-	[BLOCK_REPEAT] = {"repeat", KEY_REQUIRED},
-	[BLOCK_LINE] = {"line", KEY_REQUIRED},
+	[BLOCK_REPEAT] = {"repeat", KEY_REQUIRED, WHOLE(1, LIMIT_LINES), "How many lines of the type follow each other"},
+	[BLOCK_LINE] = {"line", KEY_REQUIRED, &printable_name_shape, "The line type, one of those in lines"},
 };
+
+static const struct shape block_shape = {.kind = SHAPE_MAPPING, .title = "block", .keys = block_keys, .key_count = BLOCK_KEYS};
+
+const struct shape frame_shape = {.kind = SHAPE_LIST, .item = &block_shape, .least = 1, .most = INT64_MAX};
 
 static bool find_line(struct reader *reader, const struct node *node, size_t *line)
 {
@@ -39,8 +43,7 @@ static bool read_block(struct reader *reader, const struct node *node, struct bl
 	block->repeat = 1;
 	if (!read_mapping(reader, node, "a block of the frame", block_keys, BLOCK_KEYS, values))
 		return false;
-	if (values[BLOCK_REPEAT] != NULL)
-		read_whole(reader, values[BLOCK_REPEAT], "repeat", 1, LIMIT_LINES, &block->repeat);
+	key_whole(reader, &block_keys[BLOCK_REPEAT], values[BLOCK_REPEAT], &block->repeat);
 	if (values[BLOCK_LINE] != NULL)
 		find_line(reader, values[BLOCK_LINE], &block->line_type);
 	if (block->repeat <= LIMIT_LINES - *lines) {

@@ -7,20 +7,58 @@
 
 enum { REGION_NAME, REGION_CELLS, REGION_TIME, REGION_FILL, REGION_ASSERT, REGION_STRETCH, REGION_HOLD, REGION_KEYS };
 
+const struct shape expression_shape = {.kind = SHAPE_TEXT, .pattern = EXPRESSION_PATTERN, .also = ALSO_WHOLE};
+
+static const char *const auto_word[] = {"auto"};
+
+static const struct shape holds_shape = {
+	.kind = SHAPE_NAMED, .name = &identifier_shape, .item = &expression_shape, .most = INT64_MAX,
+};
+
 static const struct key region_keys[REGION_KEYS] = {
-	[REGION_NAME] = {"region", KEY_REQUIRED},   [REGION_CELLS] = {"cells", KEY_OPTIONAL},
-	[REGION_TIME] = {"time", KEY_OPTIONAL},     [REGION_FILL] = {"fill", KEY_OPTIONAL},
-	[REGION_ASSERT] = {"assert", KEY_OPTIONAL}, [REGION_STRETCH] = {"stretch", KEY_OPTIONAL},
-	[REGION_HOLD] = {"hold", KEY_OPTIONAL},
+	[REGION_NAME] = {"region", KEY_REQUIRED, &printable_name_shape, "Its name"},
+	[REGION_CELLS] = {"cells", KEY_OPTIONAL, WHOLE(1, LIMIT_CELLS), "Its length in cells"},
+	[REGION_TIME] = {"time", KEY_OPTIONAL, QUANTITY(IN_SECONDS | IN_TICKS | IN_DOTS | IN_CELLS, QUANTITY_POSITIVE),
+	                 "Its length as a time, or in ticks, dots or cells; its edges go to the nearest boundary of normal cells"},
+	[REGION_FILL] = {"fill", KEY_OPTIONAL, &truth_shape, "true: its length is what the others leave of the line's cells"},
+	[REGION_ASSERT] = {"assert", KEY_OPTIONAL, SET_OF(&identifier_shape, 0, INT64_MAX),
+	                   "The signals that are asserted in all its cells; none if left out"},
+	[REGION_STRETCH] = {"stretch", KEY_OPTIONAL, EITHER(WHOLE(0, LIMIT_CELLS), CHOICE(auto_word)),
+	                    "How many of its first cells are stretched; auto: the program stretches cells here so that the line "
+	                    "meets the clock's phase"},
+	[REGION_HOLD] = {"hold", KEY_OPTIONAL, &holds_shape,
+	                 "Fields of the state and their values in each cell, as expressions with line, row (in its block), cell and "
+	                 "col (in the region); of a line-frame machine with cell and col"},
+};
+
+#define LENGTHS .first = REGION_CELLS, .count = REGION_FILL - REGION_CELLS + 1
+
+static const struct shape region_shape = {
+	.kind = SHAPE_MAPPING, .title = "region", .about = "A run of cells in which the same signals are asserted",
+	.keys = region_keys, .key_count = REGION_KEYS, .group = {LENGTHS, .one = true},
+};
+static const struct shape change_shape = {
+	.kind = SHAPE_MAPPING, .title = "change", .about = "A region of the line type that this one is like, with the keys that differ",
+	.keys = region_keys, .key_count = REGION_KEYS, .group = {LENGTHS, .one = false},
 };
 
 enum { LINE_CELLS, LINE_REGIONS, LINE_LIKE, LINE_CHANGE, LINE_KEYS };
 
 static const struct key line_keys[LINE_KEYS] = {
-	[LINE_CELLS] = {"cells", KEY_OPTIONAL},
-	[LINE_REGIONS] = {"regions", KEY_OPTIONAL},
-	[LINE_LIKE] = {"like", KEY_OPTIONAL},
-	[LINE_CHANGE] = {"change", KEY_OPTIONAL},
+	[LINE_CELLS] = {"cells", KEY_OPTIONAL, WHOLE(1, LIMIT_CELLS), "How many cells the line has; the sum of its regions if left out"},
+	[LINE_REGIONS] = {"regions", KEY_OPTIONAL, LIST_OF(&region_shape, 1, UINT16_MAX), "The regions of the line, end to end"},
+	[LINE_LIKE] = {"like", KEY_OPTIONAL, &printable_name_shape, "Another line type, whose regions this one has with changes"},
+	[LINE_CHANGE] = {"change", KEY_OPTIONAL, LIST_OF(&change_shape, 0, INT64_MAX), "The regions that differ, by name"},
+};
+
+// Regions or like.
+static const struct shape line_shape = {
+	.kind = SHAPE_MAPPING, .title = "line type", .keys = line_keys, .key_count = LINE_KEYS,
+	.group = {.first = LINE_REGIONS, .count = 2, .one = true}, .bond = {.key = "change", .needs = "like"},
+};
+
+const struct shape lines_shape = {
+	.kind = SHAPE_NAMED, .name = &printable_name_shape, .item = &line_shape, .least = 1, .most = INT64_MAX,
 };
 
 // A line type while `like` is being resolved: its values, and how far it is.
@@ -33,10 +71,9 @@ struct pending_line {
 
 static void read_region_time(struct reader *reader, const struct node *node, struct region *region)
 {
-	const unsigned allowed = 1u << DIMENSION_TIME | 1u << DIMENSION_TICKS | 1u << DIMENSION_DOTS | 1u << DIMENSION_CELLS;
 	const struct clock *clock = &reader->plan->clock;
 	struct quantity quantity;
-	if (!read_quantity(reader, node, "time", allowed, &quantity) || !reader->clock_known)
+	if (!key_quantity(reader, &region_keys[REGION_TIME], node, &quantity) || !reader->clock_known)
 		return;
 	struct fraction unit = fraction_whole(1);
 	if (quantity.dimension == DIMENSION_TIME)
@@ -66,7 +103,7 @@ static void read_region_length(struct reader *reader, const struct node *node, c
 	if (values[REGION_CELLS] != NULL) {
 		region->length = LENGTH_CELLS;
 		region->length_place = values[REGION_CELLS]->place;
-		read_whole(reader, values[REGION_CELLS], "cells", 1, LIMIT_CELLS, &region->cells);
+		key_whole(reader, &region_keys[REGION_CELLS], values[REGION_CELLS], &region->cells);
 	} else if (values[REGION_TIME] != NULL) {
 		region->length = LENGTH_TIME;
 		region->length_place = values[REGION_TIME]->place;
@@ -75,7 +112,7 @@ static void read_region_length(struct reader *reader, const struct node *node, c
 		bool fill = true;
 		region->length = LENGTH_FILL;
 		region->length_place = values[REGION_FILL]->place;
-		if (read_truth(reader, values[REGION_FILL], "fill", &fill) && !fill) {
+		if (key_truth(reader, &region_keys[REGION_FILL], values[REGION_FILL], &fill) && !fill) {
 			diagnose(reader->diagnostics, RULE_REGION_LENGTH, values[REGION_FILL]->place,
 			         "region \"%s\" has fill: false and so no length", region->name);
 			diagnose_hint(reader->diagnostics, "give it cells or time, or fill: true");
@@ -356,7 +393,7 @@ static bool copy_regions(struct reader *reader, const struct line_type *from, st
 
 static void read_line_cells(struct reader *reader, const struct node *node, struct line_type *line)
 {
-	if (node == NULL || !read_whole(reader, node, "cells", 1, LIMIT_CELLS, &line->cells))
+	if (!key_whole(reader, &line_keys[LINE_CELLS], node, &line->cells))
 		return;
 	line->has_cells = true;
 	line->cells_place = node->place;

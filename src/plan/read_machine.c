@@ -3,6 +3,7 @@
 #include <string.h>
 
 #include "base/arena.h"
+#include "plan/read_stage.h"
 
 enum {
 	MACHINE_FORM,
@@ -18,12 +19,33 @@ enum {
 	MACHINE_KEYS
 };
 
+static const char *const forms[] = {[FORM_LOOP] = "loop", [FORM_LINE_FRAME] = "line-frame"};
+
+#define ONE_FORM(form) SHAPE(.kind = SHAPE_CHOICE, .words = &forms[form], .word_count = 1)
+#define FORM_KEY(form) \
+	{"form", KEY_REQUIRED, ONE_FORM(form), \
+	 "loop: one stage, with a state for each cell of the frame; line-frame: two, one for the line and one for the frame"}
+#define FIELDS_KEY {"fields", KEY_OPTIONAL, &fields_shape, "Names for bits of the (line stage's) state, as { at: 10..0 }"}
+#define START_KEY \
+	{"start", KEY_OPTIONAL, WHOLE(0, (1 << LIMIT_STATE_BITS) - 1), \
+	 "The (line stage's) state in the first cell of the frame (of every line): what a cleared latch holds"}
+#define ELSEWHERE(name) {name, KEY_ELSEWHERE, NULL, NULL}
+
+static const struct shape fields_shape = {
+	.kind = SHAPE_NAMED, .name = &identifier_shape, .item = &bits_shape, .most = LIMIT_FIELDS,
+};
+
 static const struct key loop_keys[MACHINE_KEYS] = {
-	[MACHINE_FORM] = {"form", KEY_REQUIRED},       [MACHINE_STATE] = {"state", KEY_REQUIRED},
-	[MACHINE_FIELDS] = {"fields", KEY_OPTIONAL},   [MACHINE_START] = {"start", KEY_OPTIONAL},
-	[MACHINE_OUTPUTS] = {"outputs", KEY_OPTIONAL}, [MACHINE_ADVANCE] = {"advance", KEY_OPTIONAL},
-	[MACHINE_CLEAR] = {"clear", KEY_OPTIONAL},     [MACHINE_LINE] = {"line", KEY_ELSEWHERE},
-	[MACHINE_FRAME] = {"frame", KEY_ELSEWHERE},    [MACHINE_KIND] = {"kind", KEY_ELSEWHERE},
+	[MACHINE_FORM] = FORM_KEY(FORM_LOOP),
+	[MACHINE_STATE] = STATE_KEY,
+	[MACHINE_FIELDS] = FIELDS_KEY,
+	[MACHINE_START] = START_KEY,
+	[MACHINE_OUTPUTS] = OUTPUTS_KEY,
+	[MACHINE_ADVANCE] = ADVANCE_KEY,
+	[MACHINE_CLEAR] = CLEAR_KEY,
+	[MACHINE_LINE] = ELSEWHERE("line"),
+	[MACHINE_FRAME] = ELSEWHERE("frame"),
+	[MACHINE_KIND] = ELSEWHERE("kind"),
 };
 
 #define TWO_STAGES_ONLY "a loop machine has one stage and no kinds: give state and the rest here, or make it form: line-frame"
@@ -35,12 +57,28 @@ static const struct stray_key loop_strays[] = {
 };
 
 static const struct key line_frame_keys[MACHINE_KEYS] = {
-	[MACHINE_FORM] = {"form", KEY_REQUIRED},        [MACHINE_STATE] = {"state", KEY_ELSEWHERE},
-	[MACHINE_FIELDS] = {"fields", KEY_OPTIONAL},    [MACHINE_START] = {"start", KEY_OPTIONAL},
-	[MACHINE_OUTPUTS] = {"outputs", KEY_ELSEWHERE}, [MACHINE_ADVANCE] = {"advance", KEY_ELSEWHERE},
-	[MACHINE_CLEAR] = {"clear", KEY_ELSEWHERE},     [MACHINE_LINE] = {"line", KEY_REQUIRED},
-	[MACHINE_FRAME] = {"frame", KEY_REQUIRED},      [MACHINE_KIND] = {"kind", KEY_OPTIONAL},
+	[MACHINE_FORM] = FORM_KEY(FORM_LINE_FRAME),
+	[MACHINE_STATE] = ELSEWHERE("state"),
+	[MACHINE_FIELDS] = FIELDS_KEY,
+	[MACHINE_START] = START_KEY,
+	[MACHINE_OUTPUTS] = ELSEWHERE("outputs"),
+	[MACHINE_ADVANCE] = ELSEWHERE("advance"),
+	[MACHINE_CLEAR] = ELSEWHERE("clear"),
+	[MACHINE_LINE] = {"line", KEY_REQUIRED, &stage_shape, "The line stage: goes through the cells of a line"},
+	[MACHINE_FRAME] = {"frame", KEY_REQUIRED, &stage_shape, "The frame stage: goes from line to line"},
+	[MACHINE_KIND] = {"kind", KEY_OPTIONAL, BIT_COUNT(0, LIMIT_KIND_BITS),
+	                  "The bits that tell line types apart; when left out, as many as the line types need"},
 };
+
+static const struct shape loop_machine_shape = {
+	.kind = SHAPE_MAPPING, .title = "loop machine", .keys = loop_keys, .key_count = MACHINE_KEYS,
+};
+static const struct shape line_frame_machine_shape = {
+	.kind = SHAPE_MAPPING, .title = "line-frame machine", .keys = line_frame_keys, .key_count = MACHINE_KEYS,
+};
+static const struct shape *const machine_shapes[] = {&loop_machine_shape, &line_frame_machine_shape};
+
+const struct shape machine_shape = {.kind = SHAPE_EITHER, .shapes = machine_shapes, .shape_count = COUNT_OF(machine_shapes)};
 
 #define EACH_STAGE_HAS_ITS_OWN(key) "each stage has its own: write line: { " key ": ... } and frame: { " key ": ... }"
 
@@ -89,7 +127,6 @@ static void read_start(struct reader *reader, const struct node *node)
 // Settles the form. False after reporting; a form that is missing is left to read_mapping.
 static bool read_form(struct reader *reader, const struct node *node)
 {
-	static const char *const forms[] = {[FORM_LOOP] = "loop", [FORM_LINE_FRAME] = "line-frame"};
 	struct machine_plan *machine = &reader->plan->machine;
 	size_t choice = FORM_LOOP;
 	if (node->kind != NODE_MAPPING)

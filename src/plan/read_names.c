@@ -10,15 +10,32 @@
 #define IDENTIFIER_CHARACTERS 100
 #define WORD_BYTES 48
 
-static const char *const reserved_words[] = {"state", "next", "kind", "bank", "step", "clear", "low", "high"};
+// The last four are an expression's variables.
+static const char *const reserved_words[] = {"state", "next", "kind", "bank", "step", "clear", "low", "high",
+                                             "line",  "cell", "col",  "row"};
+_Static_assert(VARIABLE_COUNT == 4, "a new variable is reserved too");
+
+const struct shape identifier_shape = {
+	.kind = SHAPE_TEXT,
+	.about = "A lower-case letter, then lower-case letters, digits and _; no name that the language uses itself",
+	.pattern = IDENTIFIER_PATTERN,
+	.most = IDENTIFIER_CHARACTERS,
+	.forbidden = reserved_words,
+	.forbidden_count = COUNT_OF(reserved_words),
+	.also = ALSO_TRUTH,
+};
+const struct shape printable_name_shape = {
+	.kind = SHAPE_TEXT,
+	.about = "1 to 40 printable characters without quotes",
+	.most = NAME_CHARACTERS,
+	.never = UNPRINTABLE_PATTERN "|[\"']",
+	.also = ALSO_NUMBER | ALSO_TRUTH,
+};
 
 static bool is_reserved(const char *name)
 {
 	for (size_t index = 0; index < COUNT_OF(reserved_words); index++)
 		if (strcmp(reserved_words[index], name) == 0)
-			return true;
-	for (unsigned variable = 0; variable < VARIABLE_COUNT; variable++)
-		if (strcmp(variable_name((enum variable)variable), name) == 0)
 			return true;
 	return false;
 }

@@ -6,11 +6,21 @@
 
 enum { PART_ADDRESS_PINS, PART_DATA_PINS, PART_ACCESS, PART_PACKAGE, PART_KEYS };
 
+#define MOST_GRADES 64
+
+static const char *const widths[] = {"8", "16"};
+
 static const struct key part_keys[PART_KEYS] = {
-	[PART_ADDRESS_PINS] = {"address pins", KEY_REQUIRED},
-	[PART_DATA_PINS] = {"data pins", KEY_REQUIRED},
-	[PART_ACCESS] = {"access", KEY_REQUIRED},
-	[PART_PACKAGE] = {"package", KEY_OPTIONAL},
+	[PART_ADDRESS_PINS] = {"address pins", KEY_REQUIRED, WHOLE(1, LIMIT_ADDRESS_PINS), "How many address pins it has"},
+	[PART_DATA_PINS] = {"data pins", KEY_REQUIRED, CHOICE(widths), "How many data pins it has"},
+	[PART_ACCESS] = {"access", KEY_REQUIRED, LIST_OF(&time_shape, 1, MOST_GRADES), "The access times that it is sold with"},
+	[PART_PACKAGE] = {"package", KEY_OPTIONAL, &text_shape, "Its package; reported"},
+};
+
+static const struct shape part_shape = {.kind = SHAPE_MAPPING, .title = "part", .keys = part_keys, .key_count = PART_KEYS};
+
+const struct shape parts_shape = {
+	.kind = SHAPE_NAMED, .name = &printable_name_shape, .item = &part_shape, .most = INT64_MAX,
 };
 
 static int slower_first(const struct access_grade *left, const struct access_grade *right)
@@ -33,8 +43,9 @@ static void read_grades(struct reader *reader, const struct node *node, struct p
 {
 	if (!expect_values(reader, node, "access"))
 		return;
-	if (node->count == 0 || node->count > 64) {
-		diagnose(reader->diagnostics, RULE_TOO_MANY, node->place, "access: wanted 1 to 64 grades, found %zu", node->count);
+	if (node->count == 0 || node->count > MOST_GRADES) {
+		diagnose(reader->diagnostics, RULE_TOO_MANY, node->place, "access: wanted 1 to %d grades, found %zu", MOST_GRADES,
+		         node->count);
 		return;
 	}
 	struct access_grade *grades = reader_array(reader, node->count, sizeof *grades);
@@ -60,12 +71,10 @@ static void read_own_part(struct reader *reader, const struct node *key, const s
 	check_printable_name(reader, key, "part");
 	if (!read_mapping(reader, value, "a part", part_keys, PART_KEYS, values))
 		return;
-	if (values[PART_ADDRESS_PINS] != NULL &&
-	    read_whole(reader, values[PART_ADDRESS_PINS], "address pins", 1, LIMIT_ADDRESS_PINS, &pins))
+	if (key_whole(reader, &part_keys[PART_ADDRESS_PINS], values[PART_ADDRESS_PINS], &pins))
 		part->address_pins = (unsigned)pins;
-	static const char *const widths[] = {"8", "16"};
 	size_t width;
-	if (values[PART_DATA_PINS] != NULL && read_choice(reader, values[PART_DATA_PINS], "data pins", widths, COUNT_OF(widths), &width))
+	if (key_choice(reader, &part_keys[PART_DATA_PINS], values[PART_DATA_PINS], &width))
 		part->data_pins = width == 0 ? 8 : 16;
 	if (values[PART_ACCESS] != NULL)
 		read_grades(reader, values[PART_ACCESS], part);

@@ -27,13 +27,44 @@ enum {
 	PLAN_KEYS
 };
 
+// What plans and boards have both.
+#define BOARD_KEYS \
+	[PLAN_VERSION] = {"scanlatch", KEY_REQUIRED, &version_shape, "The version of the plan language"}, \
+	[PLAN_NAME] = {"name", KEY_REQUIRED, &file_stem_shape, "Begins the names of the files that are written"}, \
+	[PLAN_NOTE] = {"note", KEY_OPTIONAL, &note_shape, "What the board is, for reports"}, \
+	[PLAN_STANDARD] = {"standard", KEY_OPTIONAL, &standard_shape, "What to measure against: a standard of the catalogue, or one's own"}, \
+	[PLAN_GRADE] = {"grade", KEY_OPTIONAL, &grade_shape, \
+	                "studio: the published limits; monitor (what it is when left out): what receivers and monitors accept"}, \
+	[PLAN_CLOCK] = {"clock", KEY_REQUIRED, &clock_shape, "The master clock, and what is divided from it"}, \
+	[PLAN_SIGNALS] = {"signals", KEY_REQUIRED, &signals_shape, "The control lines of the board, in the order of the word's bits"}, \
+	[PLAN_MACHINE] = {"machine", KEY_REQUIRED, &machine_shape, "The form of the sequencer and its state"}, \
+	[PLAN_PARTS] = {"parts", KEY_OPTIONAL, &parts_shape, "Memories that the catalogue does not have, by name"}, \
+	[PLAN_CHIPS] = {"chips", KEY_REQUIRED, &chips_shape, "The EEPROMs, and what is wired to their pins"}, \
+	[PLAN_TIMING] = {"timing", KEY_OPTIONAL, &timing_shape, "The parts around the EEPROMs, for the proof of speed"}, \
+	[PLAN_SWEEP] = {"sweep", KEY_OPTIONAL, &sweeps_shape, "State bits whose values must all come up within a time"}, \
+	[PLAN_BANK] = {"bank", KEY_ELSEWHERE, NULL, NULL}, \
+	[PLAN_BANKS] = {"banks", KEY_ELSEWHERE, NULL, NULL}
+
 static const struct key plan_keys[PLAN_KEYS] = {
-	[PLAN_VERSION] = {"scanlatch", KEY_REQUIRED}, [PLAN_NAME] = {"name", KEY_REQUIRED},     [PLAN_NOTE] = {"note", KEY_OPTIONAL},
-	[PLAN_STANDARD] = {"standard", KEY_OPTIONAL}, [PLAN_GRADE] = {"grade", KEY_OPTIONAL},   [PLAN_CLOCK] = {"clock", KEY_REQUIRED},
-	[PLAN_SIGNALS] = {"signals", KEY_REQUIRED},   [PLAN_LINES] = {"lines", KEY_REQUIRED},   [PLAN_FRAME] = {"frame", KEY_REQUIRED},
-	[PLAN_MACHINE] = {"machine", KEY_REQUIRED},   [PLAN_PARTS] = {"parts", KEY_OPTIONAL},   [PLAN_CHIPS] = {"chips", KEY_REQUIRED},
-	[PLAN_TIMING] = {"timing", KEY_OPTIONAL},     [PLAN_SWEEP] = {"sweep", KEY_OPTIONAL},   [PLAN_BANK] = {"bank", KEY_ELSEWHERE},
-	[PLAN_BANKS] = {"banks", KEY_ELSEWHERE},
+	BOARD_KEYS,
+	[PLAN_LINES] = {"lines", KEY_REQUIRED, &lines_shape, "The line types, by name: what regions each is made of"},
+	[PLAN_FRAME] = {"frame", KEY_REQUIRED, &frame_shape, "Blocks of lines, in order; the sequencer loops over them for ever"},
+};
+
+// A board is everything but lines and frame; those of a plan that is given in its place are passed over.
+static const struct key board_keys[PLAN_KEYS] = {
+	BOARD_KEYS,
+	[PLAN_LINES] = {"lines", KEY_OPTIONAL, &lines_shape, "Of a plan in a board's place; passed over"},
+	[PLAN_FRAME] = {"frame", KEY_OPTIONAL, &frame_shape, "Of a plan in a board's place; passed over"},
+};
+
+const struct shape plan_shape = {
+	.kind = SHAPE_MAPPING, .about = "What every line of the picture is made of, and what the board looks like",
+	.keys = plan_keys, .key_count = PLAN_KEYS,
+};
+const struct shape board_shape = {
+	.kind = SHAPE_MAPPING, .about = "What a board looks like: a plan without lines and frame",
+	.keys = board_keys, .key_count = PLAN_KEYS,
 };
 
 #define OF_A_SET "that is of a set, which begins with scanlatch-set: 1"
@@ -43,9 +74,17 @@ static const struct stray_key set_strays[] = {{"bank", OF_A_SET}, {"banks", OF_A
 // Longest name of a plan or set: with a label and an ending it must still make a file name.
 #define STEM_CHARACTERS 100
 
+static const char *const versions[] = {"1"};
+
+const struct shape version_shape = {.kind = SHAPE_CHOICE, .words = versions, .word_count = COUNT_OF(versions)};
+const struct shape file_stem_shape = {
+	.kind = SHAPE_TEXT, .about = "1 to 100 lower-case letters, digits and -, not starting with -",
+	.pattern = "[a-z0-9][a-z0-9-]*", .most = STEM_CHARACTERS, .also = ALSO_NUMBER | ALSO_TRUTH,
+};
+
 void read_version(struct reader *reader, const struct node *node, const char *what)
 {
-	if (node->kind == NODE_SCALAR && strcmp(node->text, "1") == 0)
+	if (node->kind == NODE_SCALAR && strcmp(node->text, versions[0]) == 0)
 		return;
 	if (!expect_kind(reader, node, NODE_SCALAR, what))
 		return;
@@ -107,17 +146,47 @@ static void hint_board(struct reader *reader, const struct node *root, const str
 {
 	if (values[PLAN_LINES] == NULL && values[PLAN_FRAME] == NULL && values[PLAN_MACHINE] != NULL &&
 	    !key_is_misspelt(root, plan_keys, PLAN_KEYS, PLAN_LINES) && !key_is_misspelt(root, plan_keys, PLAN_KEYS, PLAN_FRAME))
-		diagnose_hint(reader->diagnostics, "a file without lines and frame is a board, not a plan");
+		diagnose_hint(reader->diagnostics, "a file without lines and frame is a board, not a plan; scanlatch lift reads images against it");
+}
+
+// Settles the kind of a board. Line types are only counted, should it be a plan.
+static void settle_board(struct reader *reader, const struct node *lines)
+{
+	struct plan *plan = reader->plan;
+	const bool is_plan = lines != NULL && lines->kind == NODE_MAPPING;
+	if (reader->form_known && plan->machine.form == FORM_LINE_FRAME && reader->kind == NULL && !is_plan) {
+		diagnose(reader->diagnostics, RULE_BOARD_KIND, plan->machine.place,
+		         "a board of two stages has to say how many bits its kind has, found no kind in machine");
+		diagnose_hint(reader->diagnostics, "add kind: N bits: there are no line types to count");
+	}
+	plan->line_count = is_plan ? lines->count : 0;
+	settle_kinds(reader);
+	plan->line_count = 0;
+}
+
+static void read_lines_and_frame(struct reader *reader, const struct node *lines, const struct node *frame)
+{
+	if (reader->board) {
+		settle_board(reader, lines);
+		return;
+	}
+	if (lines != NULL)
+		read_lines(reader, lines);
+	settle_kinds(reader);
+	if (frame != NULL && reader->plan->line_count > 0)
+		read_frame(reader, frame);
 }
 
 static void read_root(struct reader *reader, const struct node *root)
 {
 	struct plan *plan = reader->plan;
 	const struct node *values[PLAN_KEYS];
-	if (refuse_set(reader, root) || !read_mapping(reader, root, "a plan", plan_keys, PLAN_KEYS, values))
+	const char *what = reader->board ? "a board" : "a plan";
+	if (refuse_set(reader, root) || !read_mapping(reader, root, what, reader->board ? board_keys : plan_keys, PLAN_KEYS, values))
 		return;
-	report_elsewhere(reader, root, "a plan", set_strays, COUNT_OF(set_strays));
-	hint_board(reader, root, values);
+	report_elsewhere(reader, root, what, set_strays, COUNT_OF(set_strays));
+	if (!reader->board)
+		hint_board(reader, root, values);
 	if (values[PLAN_VERSION] != NULL)
 		read_version(reader, values[PLAN_VERSION], "scanlatch");
 	if (values[PLAN_NAME] != NULL)
@@ -130,11 +199,7 @@ static void read_root(struct reader *reader, const struct node *root)
 		read_machine(reader, values[PLAN_MACHINE]);
 	if (values[PLAN_SIGNALS] != NULL)
 		read_signals(reader, values[PLAN_SIGNALS]);
-	if (values[PLAN_LINES] != NULL)
-		read_lines(reader, values[PLAN_LINES]);
-	settle_kinds(reader);
-	if (values[PLAN_FRAME] != NULL && plan->line_count > 0)
-		read_frame(reader, values[PLAN_FRAME]);
+	read_lines_and_frame(reader, values[PLAN_LINES], values[PLAN_FRAME]);
 	if (values[PLAN_PARTS] != NULL)
 		read_own_parts(reader, values[PLAN_PARTS]);
 	if (values[PLAN_CHIPS] != NULL)
@@ -175,17 +240,17 @@ static struct plan *make_plan(const struct source *source, struct diagnostics *d
 	return plan;
 }
 
-struct plan *plan_read_for_set(const struct source *source, const struct catalogue *catalogue, const struct set *set, size_t bank,
-                               struct diagnostics *diagnostics)
+// Reads what a source holds; the reader says as what, and of which set.
+static struct plan *read_source(const struct source *source, struct reader reader)
 {
+	struct diagnostics *diagnostics = reader.diagnostics;
 	const size_t errors_before = diagnostics_error_count(diagnostics);
 	struct plan *plan = make_plan(source, diagnostics);
 	if (plan == NULL)
 		return NULL;
-	struct reader reader = {.arena = plan->arena, .plan = plan, .catalogue = catalogue, .diagnostics = diagnostics};
-	reader.set = set;
-	reader.bank = bank;
-	reader.set_bits = plan->bank_bits = set != NULL ? set->bank_bits : 0;
+	reader.arena = plan->arena;
+	reader.plan = plan;
+	reader.set_bits = plan->bank_bits = reader.set != NULL ? reader.set->bank_bits : 0;
 	const struct node *root = document_parse(plan->arena, source, diagnostics);
 	if (root != NULL)
 		read_root(&reader, root);
@@ -195,9 +260,20 @@ struct plan *plan_read_for_set(const struct source *source, const struct catalog
 	return NULL;
 }
 
+struct plan *plan_read_for_set(const struct source *source, const struct catalogue *catalogue, const struct set *set, size_t bank,
+                               struct diagnostics *diagnostics)
+{
+	return read_source(source, (struct reader){.catalogue = catalogue, .diagnostics = diagnostics, .set = set, .bank = bank});
+}
+
 struct plan *plan_read(const struct source *source, const struct catalogue *catalogue, struct diagnostics *diagnostics)
 {
 	return plan_read_for_set(source, catalogue, NULL, 0, diagnostics);
+}
+
+struct plan *board_read(const struct source *source, const struct catalogue *catalogue, struct diagnostics *diagnostics)
+{
+	return read_source(source, (struct reader){.catalogue = catalogue, .diagnostics = diagnostics, .board = true});
 }
 
 void plan_destroy(struct plan *plan)

@@ -9,9 +9,27 @@
 
 enum { SET_VERSION, SET_NAME, SET_NOTE, SET_BANK, SET_BANKS, SET_KEYS };
 
+static const struct shape bank_number_shape = {.kind = SHAPE_TEXT, .pattern = WHOLE_PATTERN};
+static const struct shape bank_path_shape = {
+	.kind = SHAPE_TEXT, .never = "^/|(^|/)\\.\\.(/|$)", .also = ALSO_NUMBER | ALSO_TRUTH,
+};
+static const struct shape banks_shape = {
+	.kind = SHAPE_NAMED, .name = &bank_number_shape, .item = &bank_path_shape, .least = 1, .most = 1 << LIMIT_BANK_BITS,
+	.needs_name = "0x0+|0+",
+};
+
 static const struct key set_keys[SET_KEYS] = {
-	[SET_VERSION] = {"scanlatch-set", KEY_REQUIRED}, [SET_NAME] = {"name", KEY_REQUIRED},   [SET_NOTE] = {"note", KEY_OPTIONAL},
-	[SET_BANK] = {"bank", KEY_REQUIRED},             [SET_BANKS] = {"banks", KEY_REQUIRED},
+	[SET_VERSION] = {"scanlatch-set", KEY_REQUIRED, &version_shape, "The version of the plan language"},
+	[SET_NAME] = {"name", KEY_REQUIRED, &file_stem_shape, "Begins the names of the files that are written"},
+	[SET_NOTE] = {"note", KEY_OPTIONAL, &note_shape, "What the set is, for reports"},
+	[SET_BANK] = {"bank", KEY_REQUIRED, BIT_COUNT(1, LIMIT_BANK_BITS), "The bits that choose a bank: so many jumpers"},
+	[SET_BANKS] = {"banks", KEY_REQUIRED, &banks_shape,
+	               "The plan of each bank, by its number; those that are not listed repeat bank 0. Paths are relative to the set and "
+	               "stay in its folder"},
+};
+
+const struct shape set_shape = {
+	.kind = SHAPE_MAPPING, .about = "Several plans in the same chips, chosen by jumpers", .keys = set_keys, .key_count = SET_KEYS,
 };
 
 bool source_is_set(const struct source *source)
@@ -126,7 +144,7 @@ static void read_set_root(struct reader *reader, const struct node *root, struct
 		read_file_stem(reader, values[SET_NAME], &set->name);
 	set->note = read_note(reader, values[SET_NOTE]);
 	unsigned bank_bits = LIMIT_BANK_BITS;
-	if (values[SET_BANK] != NULL && read_bit_count(reader, values[SET_BANK], "bank", 1, LIMIT_BANK_BITS, &bank_bits))
+	if (key_bit_count(reader, &set_keys[SET_BANK], values[SET_BANK], &bank_bits))
 		set->bank_bits = bank_bits;
 	if (values[SET_BANKS] != NULL)
 		read_banks(reader, values[SET_BANKS], bank_bits, set);

@@ -7,26 +7,11 @@
 
 enum { SIGNAL_ROLE, SIGNAL_ACTIVE, SIGNAL_LEAD, SIGNAL_FROM, SIGNAL_STAGE, SIGNAL_KEYS };
 
-static const struct key signal_keys[SIGNAL_KEYS] = {
-	[SIGNAL_ROLE] = {"role", KEY_REQUIRED}, [SIGNAL_ACTIVE] = {"active", KEY_REQUIRED}, [SIGNAL_LEAD] = {"lead", KEY_OPTIONAL},
-	[SIGNAL_FROM] = {"from", KEY_OPTIONAL}, [SIGNAL_STAGE] = {"stage", KEY_OPTIONAL},
-};
-
-static const struct key loop_signal_keys[SIGNAL_KEYS] = {
-	[SIGNAL_ROLE] = {"role", KEY_REQUIRED}, [SIGNAL_ACTIVE] = {"active", KEY_REQUIRED}, [SIGNAL_LEAD] = {"lead", KEY_OPTIONAL},
-	[SIGNAL_FROM] = {"from", KEY_OPTIONAL}, [SIGNAL_STAGE] = {"stage", KEY_ELSEWHERE},
-};
-
-static const struct stray_key loop_signal_strays[] = {
-	{"stage", "a loop machine has one stage: leave stage out, or make the machine form: line-frame"},
-};
-
 enum { FROM_KEY_FIELD, FROM_KEY_CODES, FROM_KEYS };
 
-static const struct key from_keys[FROM_KEYS] = {
-	[FROM_KEY_FIELD] = {"field", KEY_REQUIRED},
-	[FROM_KEY_CODES] = {"codes", KEY_REQUIRED},
-};
+static const char *const auto_word[] = {"auto"};
+static const char *const data_word[] = {"data"};
+static const char *const levels[] = {"low", "high"};
 
 static const char *const role_words[ROLE_COUNT] = {
 	[ROLE_PLAIN] = "plain",
@@ -36,6 +21,51 @@ static const char *const role_words[ROLE_COUNT] = {
 	[ROLE_BLANKING] = "blanking",
 	[ROLE_BURST_GATE] = "burst gate",
 	[ROLE_STRETCH] = "stretch",
+};
+
+static const struct key from_keys[FROM_KEYS] = {
+	[FROM_KEY_FIELD] = {"field", KEY_REQUIRED, &identifier_shape, "A field of the (line stage's) state"},
+	[FROM_KEY_CODES] = {"codes", KEY_REQUIRED,
+	                    EITHER(SET_OF(WHOLE(0, (1 << LIMIT_STATE_BITS) - 1), 1, INT64_MAX), CHOICE(auto_word)),
+	                    "The codes of the field at which the signal is asserted; auto: the program chooses them"},
+};
+
+static const struct shape from_field_shape = {
+	.kind = SHAPE_MAPPING, .title = "field and codes", .keys = from_keys, .key_count = FROM_KEYS,
+};
+
+#define SIGNAL_KEYS_OF_BOTH \
+	[SIGNAL_ROLE] = {"role", KEY_REQUIRED, CHOICE(role_words), "What the signal is for; each role but plain at most once"}, \
+	[SIGNAL_ACTIVE] = {"active", KEY_REQUIRED, CHOICE(levels), "The level of the asserted pin"}, \
+	[SIGNAL_LEAD] = {"lead", KEY_OPTIONAL, QUANTITY(IN_CELLS, QUANTITY_SIGNED), \
+	                 "How many cells before the timeline the pin must show it, as hardware further down delays it; 0 if left out"}, \
+	[SIGNAL_FROM] = {"from", KEY_OPTIONAL, EITHER(CHOICE(data_word), &from_field_shape), \
+	                 "data (what it is when left out): a bit of its own in the word; { field, codes }: decoded from the state"}
+
+static const struct key signal_keys[SIGNAL_KEYS] = {
+	SIGNAL_KEYS_OF_BOTH,
+	[SIGNAL_STAGE] = {"stage", KEY_OPTIONAL, &stage_word_shape,
+	                  "Of a line-frame machine: line (what it is when left out) or frame, the stage whose word has the signal"},
+};
+
+static const struct key loop_signal_keys[SIGNAL_KEYS] = {
+	SIGNAL_KEYS_OF_BOTH,
+	[SIGNAL_STAGE] = {"stage", KEY_ELSEWHERE, NULL, NULL},
+};
+
+static const struct shape signal_shape = {
+	.kind = SHAPE_MAPPING, .title = "signal", .keys = signal_keys, .key_count = SIGNAL_KEYS,
+};
+static const struct shape loop_signal_shape = {
+	.kind = SHAPE_MAPPING, .title = "signal of a loop machine", .keys = loop_signal_keys, .key_count = SIGNAL_KEYS,
+};
+
+#define SIGNALS_OF(shape) .kind = SHAPE_NAMED, .name = &identifier_shape, .item = &(shape), .most = LIMIT_SIGNALS
+
+const struct shape signals_shape = {SIGNALS_OF(signal_shape), .in_loop = SHAPE(SIGNALS_OF(loop_signal_shape))};
+
+static const struct stray_key loop_signal_strays[] = {
+	{"stage", "a loop machine has one stage: leave stage out, or make the machine form: line-frame"},
 };
 
 const char *role_name(enum role role)
@@ -51,7 +81,7 @@ bool signal_is_data(const struct signal *signal)
 static void read_lead(struct reader *reader, const struct node *node, struct signal *signal)
 {
 	struct quantity quantity;
-	if (!read_quantity(reader, node, "lead", 1u << DIMENSION_CELLS, &quantity))
+	if (!key_quantity(reader, &signal_keys[SIGNAL_LEAD], node, &quantity))
 		return;
 	if (!fraction_is_whole(quantity.value) || llabs(quantity.value.numerator) > LIMIT_LEAD_CELLS) {
 		diagnose(reader->diagnostics, RULE_BAD_QUANTITY, node->place,
@@ -183,13 +213,11 @@ static void read_signal(struct reader *reader, const struct node *node, size_t i
 	if (!read_mapping(reader, node, "a signal", loop ? loop_signal_keys : signal_keys, SIGNAL_KEYS, values))
 		return;
 	size_t choice;
-	if (values[SIGNAL_ROLE] != NULL && read_choice(reader, values[SIGNAL_ROLE], "role", role_words, ROLE_COUNT, &choice))
+	if (key_choice(reader, &signal_keys[SIGNAL_ROLE], values[SIGNAL_ROLE], &choice))
 		take_role(reader, values[SIGNAL_ROLE], index, (enum role)choice);
-	static const char *const levels[] = {"low", "high"};
-	if (values[SIGNAL_ACTIVE] != NULL && read_choice(reader, values[SIGNAL_ACTIVE], "active", levels, COUNT_OF(levels), &choice))
+	if (key_choice(reader, &signal_keys[SIGNAL_ACTIVE], values[SIGNAL_ACTIVE], &choice))
 		signal->active_high = choice == 1;
-	if (values[SIGNAL_LEAD] != NULL)
-		read_lead(reader, values[SIGNAL_LEAD], signal);
+	read_lead(reader, values[SIGNAL_LEAD], signal);
 	if (values[SIGNAL_FROM] != NULL)
 		read_origin(reader, values[SIGNAL_FROM], signal);
 	if (values[SIGNAL_STAGE] != NULL)

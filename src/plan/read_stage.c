@@ -1,13 +1,29 @@
-#include "plan/read.h"
+#include "plan/read_stage.h"
 
 enum { STAGED_STATE, STAGED_OUTPUTS, STAGED_ADVANCE, STAGED_CLEAR, STAGED_FIELDS, STAGED_START, STAGED_HOLD, STAGED_KEYS };
 
+static const char *const outputs_words[] = {[OUTPUTS_REGISTERED] = "registered", [OUTPUTS_DIRECT] = "direct"};
+static const char *const advance_words[] = {[ADVANCE_TABLE] = "table", [ADVANCE_COUNT] = "count"};
+static const char *const clear_words[] = {[CLEAR_SYNC] = "sync", [CLEAR_ASYNC] = "async"};
+static const char *const stage_words[] = {[STAGE_LINE] = "line", [STAGE_FRAME] = "frame"};
+
+const struct shape state_bits_shape = {.kind = SHAPE_BIT_COUNT, .least = 1, .most = LIMIT_STATE_BITS};
+const struct shape outputs_shape = {.kind = SHAPE_CHOICE, .words = outputs_words, .word_count = COUNT_OF(outputs_words)};
+const struct shape advance_shape = {.kind = SHAPE_CHOICE, .words = advance_words, .word_count = COUNT_OF(advance_words)};
+const struct shape clear_shape = {.kind = SHAPE_CHOICE, .words = clear_words, .word_count = COUNT_OF(clear_words)};
+const struct shape stage_word_shape = {.kind = SHAPE_CHOICE, .words = stage_words, .word_count = COUNT_OF(stage_words)};
+
 static const struct key stage_keys[STAGED_KEYS] = {
-	[STAGED_STATE] = {"state", KEY_REQUIRED},   [STAGED_OUTPUTS] = {"outputs", KEY_OPTIONAL},
-	[STAGED_ADVANCE] = {"advance", KEY_OPTIONAL}, [STAGED_CLEAR] = {"clear", KEY_OPTIONAL},
-	[STAGED_FIELDS] = {"fields", KEY_ELSEWHERE}, [STAGED_START] = {"start", KEY_ELSEWHERE},
-	[STAGED_HOLD] = {"hold", KEY_ELSEWHERE},
+	[STAGED_STATE] = STATE_KEY,
+	[STAGED_OUTPUTS] = OUTPUTS_KEY,
+	[STAGED_ADVANCE] = ADVANCE_KEY,
+	[STAGED_CLEAR] = CLEAR_KEY,
+	[STAGED_FIELDS] = {"fields", KEY_ELSEWHERE, NULL, NULL},
+	[STAGED_START] = {"start", KEY_ELSEWHERE, NULL, NULL},
+	[STAGED_HOLD] = {"hold", KEY_ELSEWHERE, NULL, NULL},
 };
+
+const struct shape stage_shape = {.kind = SHAPE_MAPPING, .title = "stage", .keys = stage_keys, .key_count = STAGED_KEYS};
 
 #define IN_REGIONS "hold stands in the regions of lines, and holds fields of the line stage's state"
 
@@ -40,28 +56,24 @@ void read_state_bits(struct reader *reader, const struct node *node, struct stag
 	if (node == NULL)
 		return;
 	stage->place = node->place;
-	read_bit_count(reader, node, "state", 1, LIMIT_STATE_BITS, &stage->state_bits);
+	key_bit_count(reader, &stage_keys[STAGED_STATE], node, &stage->state_bits);
 }
 
 void read_outputs(struct reader *reader, const struct node *node, struct stage_plan *stage)
 {
-	static const char *const outputs[] = {[OUTPUTS_REGISTERED] = "registered", [OUTPUTS_DIRECT] = "direct"};
 	size_t choice;
-	if (node != NULL && read_choice(reader, node, "outputs", outputs, COUNT_OF(outputs), &choice))
+	if (key_choice(reader, &stage_keys[STAGED_OUTPUTS], node, &choice))
 		stage->outputs = (enum outputs)choice;
 }
 
 bool read_advance(struct reader *reader, const struct stage_nodes *nodes, enum stage stage)
 {
-	static const char *const advances[] = {[ADVANCE_TABLE] = "table", [ADVANCE_COUNT] = "count"};
-	static const char *const clears[] = {[CLEAR_SYNC] = "sync", [CLEAR_ASYNC] = "async"};
 	struct machine_plan *machine = &reader->plan->machine;
 	struct stage_plan *plan = stage == STAGE_LINE ? &machine->line : &machine->frame;
 	size_t choice = ADVANCE_TABLE;
-	const bool known = nodes->advance == NULL ||
-	                   read_choice(reader, nodes->advance, "advance", advances, COUNT_OF(advances), &choice);
+	const bool known = nodes->advance == NULL || key_choice(reader, &stage_keys[STAGED_ADVANCE], nodes->advance, &choice);
 	plan->advance = (enum advance)choice;
-	if (nodes->clear == NULL || !read_choice(reader, nodes->clear, "clear", clears, COUNT_OF(clears), &choice))
+	if (!key_choice(reader, &stage_keys[STAGED_CLEAR], nodes->clear, &choice))
 		return known;
 	plan->clear = (enum clear_kind)choice;
 	if (known && plan->advance == ADVANCE_TABLE) {
@@ -76,9 +88,8 @@ bool read_advance(struct reader *reader, const struct stage_nodes *nodes, enum s
 
 bool read_stage_word(struct reader *reader, const struct node *node, enum stage *result)
 {
-	static const char *const stages[] = {[STAGE_LINE] = "line", [STAGE_FRAME] = "frame"};
 	size_t choice;
-	if (!read_choice(reader, node, "stage", stages, COUNT_OF(stages), &choice))
+	if (!read_choice(reader, node, "stage", stage_words, COUNT_OF(stage_words), &choice))
 		return false;
 	*result = (enum stage)choice;
 	return true;
@@ -140,7 +151,7 @@ void settle_kinds(struct reader *reader)
 	while (((size_t)1 << needed) < plan->line_count)
 		needed++;
 	plan->machine.kind_bits = needed;
-	bool known = plan->line_count > 0;
+	bool known = plan->line_count > 0 || (reader->board && reader->kind != NULL);
 	if (reader->kind != NULL)
 		known = read_kind_bits(reader, needed, &plan->machine.kind_bits) && known;
 	if (known && reader->machine_known)

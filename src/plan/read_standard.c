@@ -8,7 +8,21 @@
 
 enum { OWN_BASE, OWN_LIMITS, OWN_KEYS };
 
-static const struct key own_keys[OWN_KEYS] = {[OWN_BASE] = {"base", KEY_OPTIONAL}, [OWN_LIMITS] = {"limits", KEY_OPTIONAL}};
+static const struct key own_keys[OWN_KEYS] = {
+	[OWN_BASE] = {"base", KEY_OPTIONAL, LISTED(LISTED_STANDARDS), "A standard whose limits hold but for those given here"},
+	[OWN_LIMITS] = {"limits", KEY_OPTIONAL, SHAPE(.kind = SHAPE_LIMITS), "Limits of the plan's own, by what is measured"},
+};
+
+static const struct shape own_shape = {
+	.kind = SHAPE_MAPPING, .title = "own standard", .least = 1, .keys = own_keys, .key_count = OWN_KEYS,
+};
+static const struct shape *const standard_shapes[] = {LISTED(LISTED_STANDARDS), &own_shape};
+
+const struct shape standard_shape = {.kind = SHAPE_EITHER, .shapes = standard_shapes, .shape_count = COUNT_OF(standard_shapes)};
+
+static const char *const grade_words[GRADE_COUNT] = {[GRADE_STUDIO] = "studio", [GRADE_MONITOR] = "monitor"};
+
+const struct shape grade_shape = {.kind = SHAPE_CHOICE, .words = grade_words, .word_count = GRADE_COUNT};
 
 static void report_unknown(struct reader *reader, const struct node *node, const struct standards *standards)
 {
@@ -62,9 +76,11 @@ static const struct standard *read_own(struct reader *reader, const struct node 
 	if (standard == NULL || limits == NULL || !read_mapping(reader, node, "a standard of one's own", own_keys, OWN_KEYS, values))
 		return NULL;
 	for (size_t item = 0; item < ITEM_COUNT; item++)
-		keys[item] = (struct key){limit_item_facts((enum limit_item)item)->name, KEY_OPTIONAL};
+		keys[item] = (struct key)PLAIN_KEY(limit_item_facts((enum limit_item)item)->name, KEY_OPTIONAL);
 	if (values[OWN_LIMITS] != NULL)
 		read_mapping(reader, values[OWN_LIMITS], "limits", keys, ITEM_COUNT, own);
+	if (values[OWN_BASE] == NULL && (values[OWN_LIMITS] == NULL || values[OWN_LIMITS]->count == 0))
+		diagnose(reader->diagnostics, RULE_MISSING_KEY, node->place, "a standard of one's own needs limits, or the key \"base\"");
 	const struct standard *base = values[OWN_BASE] != NULL ? read_named(reader, values[OWN_BASE], "base") : NULL;
 	*standard = base != NULL ? *base : (struct standard){.name = "own", .title = "the plan's own limits", .documents = "", .fields = 1};
 	standard->limits = limits;
@@ -77,11 +93,10 @@ static const struct standard *read_own(struct reader *reader, const struct node 
 void read_plan_standard(struct reader *reader, const struct node *standard, const struct node *grade)
 {
 	struct plan *plan = reader->plan;
-	static const char *const words[GRADE_COUNT] = {[GRADE_STUDIO] = "studio", [GRADE_MONITOR] = "monitor"};
 	size_t choice = GRADE_MONITOR;
 	if (standard != NULL)
 		plan->standard = standard->kind == NODE_MAPPING ? read_own(reader, standard) : read_named(reader, standard, "standard");
-	if (grade != NULL && read_choice(reader, grade, "grade", words, GRADE_COUNT, &choice) && standard == NULL) {
+	if (grade != NULL && read_choice(reader, grade, "grade", grade_words, GRADE_COUNT, &choice) && standard == NULL) {
 		diagnose(reader->diagnostics, RULE_GRADE_UNUSED, grade->place, "grade: there is no standard whose grade it could be");
 		diagnose_hint(reader->diagnostics, "name one with standard; scanlatch list standards has them");
 	}

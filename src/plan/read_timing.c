@@ -18,25 +18,44 @@ enum {
 	TIMING_KEYS
 };
 
-static const struct key timing_keys[TIMING_KEYS] = {
-	[TIMING_LATCH] = {"latch", KEY_OPTIONAL},
-	[TIMING_COUNTER] = {"counter", KEY_OPTIONAL},
-	[TIMING_DECODER] = {"decoder", KEY_OPTIONAL},
-	[TIMING_LATCH_DELAY] = {"latch delay", KEY_OPTIONAL},
-	[TIMING_LATCH_SETUP] = {"latch setup", KEY_OPTIONAL},
-	[TIMING_COUNTER_DELAY] = {"counter delay", KEY_OPTIONAL},
-	[TIMING_COUNTER_SETUP] = {"counter setup", KEY_OPTIONAL},
-	[TIMING_DECODER_DELAY] = {"decoder delay", KEY_OPTIONAL},
-	[TIMING_SHARE] = {"share", KEY_OPTIONAL},
-	[TIMING_MARGIN] = {"margin", KEY_OPTIONAL},
+static const struct shape part_time_shape = {.kind = SHAPE_QUANTITY, .dimensions = IN_SECONDS, .sign = QUANTITY_NOT_NEGATIVE};
+static const struct shape share_shape = {
+	.kind = SHAPE_TEXT, .pattern = ABOVE_ZERO_PATTERN "(/" ABOVE_ZERO_PATTERN ")?", .also = ALSO_SHARE,
 };
+
+static const struct key timing_keys[TIMING_KEYS] = {
+	[TIMING_LATCH] = {"latch", KEY_OPTIONAL, LISTED(LISTED_LATCHES), "The latch, of the catalogue; 74HC574 if left out"},
+	[TIMING_COUNTER] = {"counter", KEY_OPTIONAL, LISTED(LISTED_COUNTERS),
+	                    "The counter, of the catalogue; if left out 74HC163, or 74HC161 for clear: async"},
+	[TIMING_DECODER] = {"decoder", KEY_OPTIONAL, LISTED(LISTED_DECODERS), "The decoder, of the catalogue; 74HC138 if left out"},
+	[TIMING_LATCH_DELAY] = {"latch delay", KEY_OPTIONAL, &part_time_shape,
+	                        "From the clock edge to the latch's outputs; the part's if left out"},
+	[TIMING_LATCH_SETUP] = {"latch setup", KEY_OPTIONAL, &part_time_shape, "The latch's setup time; the part's if left out"},
+	[TIMING_COUNTER_DELAY] = {"counter delay", KEY_OPTIONAL, &part_time_shape,
+	                          "From the clock edge to the counter's outputs; the part's if left out"},
+	[TIMING_COUNTER_SETUP] = {"counter setup", KEY_OPTIONAL, &part_time_shape, "The counter's setup time; the part's if left out"},
+	[TIMING_DECODER_DELAY] = {"decoder delay", KEY_OPTIONAL, &part_time_shape, "Through the decoder; the part's if left out"},
+	[TIMING_SHARE] = {"share", KEY_OPTIONAL, &share_shape,
+	                  "The part n/m of the shortest cell in which the EEPROMs must answer, as 1/2; 1 if left out"},
+	[TIMING_MARGIN] = {"margin", KEY_OPTIONAL, &part_time_shape, "A time to keep free; 0 if left out"},
+};
+
+const struct shape timing_shape = {.kind = SHAPE_MAPPING, .title = "timing", .keys = timing_keys, .key_count = TIMING_KEYS};
 
 enum { SWEEP_BITS, SWEEP_WITHIN, SWEEP_KEYS };
 
-static const struct key sweep_keys[SWEEP_KEYS] = {
-	[SWEEP_BITS] = {"bits", KEY_REQUIRED},
-	[SWEEP_WITHIN] = {"within", KEY_REQUIRED},
+static const struct shape sweep_bits_shape = {
+	.kind = SHAPE_TEXT, .pattern = IDENTIFIER_PATTERN "(\\." BIT_RANGE_PATTERN ")?", .also = ALSO_TRUTH,
 };
+
+static const struct key sweep_keys[SWEEP_KEYS] = {
+	[SWEEP_BITS] = {"bits", KEY_REQUIRED, &sweep_bits_shape, "Bits of the state: FIELD, FIELD.hi..lo (within the field) or state.hi..lo"},
+	[SWEEP_WITHIN] = {"within", KEY_REQUIRED, &time_shape, "The time in which every value of them must come up at least once"},
+};
+
+static const struct shape sweep_shape = {.kind = SHAPE_MAPPING, .title = "sweep", .keys = sweep_keys, .key_count = SWEEP_KEYS};
+
+const struct shape sweeps_shape = {.kind = SHAPE_LIST, .item = &sweep_shape, .most = LIMIT_SIGNALS};
 
 static const char *const logic_words[] = {[LOGIC_LATCH] = "latch", [LOGIC_COUNTER] = "counter", [LOGIC_DECODER] = "decoder"};
 
@@ -136,8 +155,8 @@ void read_timing(struct reader *reader, const struct node *node)
 		[TIMING_DECODER_DELAY] = &timing->decoder_delay_s, [TIMING_MARGIN] = &timing->margin_s,
 	};
 	for (size_t key = 0; key < TIMING_KEYS; key++)
-		if (overrides[key] != NULL && values[key] != NULL)
-			read_time(reader, values[key], timing_keys[key].name, false, overrides[key]);
+		if (overrides[key] != NULL)
+			key_time(reader, &timing_keys[key], values[key], overrides[key]);
 	if (values[TIMING_COUNTER_DELAY] != NULL)
 		timing->counter_delay_s[STAGE_FRAME] = timing->counter_delay_s[STAGE_LINE];
 	if (values[TIMING_COUNTER_SETUP] != NULL)
@@ -200,7 +219,6 @@ void read_sweeps(struct reader *reader, const struct node *node)
 			continue;
 		if (values[SWEEP_BITS] != NULL)
 			read_sweep_bits(reader, values[SWEEP_BITS], sweep);
-		if (values[SWEEP_WITHIN] != NULL)
-			read_time(reader, values[SWEEP_WITHIN], "within", true, &sweep->within_s);
+		key_time(reader, &sweep_keys[SWEEP_WITHIN], values[SWEEP_WITHIN], &sweep->within_s);
 	}
 }

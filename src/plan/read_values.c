@@ -1,11 +1,18 @@
 #include "plan/read.h"
 
+#include <assert.h>
 #include <string.h>
 
 #include "base/arena.h"
 #include "base/text.h"
 
 #define KEYS_LIMIT 64 // of a kind of mapping
+
+const struct shape text_shape = {.kind = SHAPE_TEXT, .also = ALSO_NUMBER | ALSO_TRUTH};
+const struct shape note_shape = {.kind = SHAPE_NOTE};
+const struct shape truth_shape = {.kind = SHAPE_TRUTH};
+const struct shape time_shape = {.kind = SHAPE_QUANTITY, .dimensions = IN_SECONDS, .sign = QUANTITY_POSITIVE};
+const struct shape bits_shape = {.kind = SHAPE_TEXT, .pattern = BIT_RANGE_PATTERN, .also = ALSO_WHOLE};
 
 static const char *const kind_words[] = {
 	[NODE_SCALAR] = "a single value",
@@ -295,6 +302,49 @@ bool read_time(struct reader *reader, const struct node *node, const char *what,
 	}
 	*seconds = quantity.value;
 	return true;
+}
+
+static const struct shape *shape_of(const struct key *key, enum shape_kind kind)
+{
+	assert(key->shape != NULL && key->shape->kind == kind);
+	(void)kind;
+	return key->shape;
+}
+
+bool key_whole(struct reader *reader, const struct key *key, const struct node *node, int64_t *result)
+{
+	const struct shape *shape = shape_of(key, SHAPE_WHOLE);
+	return node != NULL && read_whole(reader, node, key->name, shape->least, shape->most, result);
+}
+
+bool key_truth(struct reader *reader, const struct key *key, const struct node *node, bool *result)
+{
+	shape_of(key, SHAPE_TRUTH);
+	return node != NULL && read_truth(reader, node, key->name, result);
+}
+
+bool key_choice(struct reader *reader, const struct key *key, const struct node *node, size_t *result)
+{
+	const struct shape *shape = shape_of(key, SHAPE_CHOICE);
+	return node != NULL && read_choice(reader, node, key->name, shape->words, shape->word_count, result);
+}
+
+bool key_quantity(struct reader *reader, const struct key *key, const struct node *node, struct quantity *result)
+{
+	const struct shape *shape = shape_of(key, SHAPE_QUANTITY);
+	return node != NULL && read_quantity(reader, node, key->name, shape->dimensions, result);
+}
+
+bool key_bit_count(struct reader *reader, const struct key *key, const struct node *node, unsigned *bits)
+{
+	const struct shape *shape = shape_of(key, SHAPE_BIT_COUNT);
+	return node != NULL && read_bit_count(reader, node, key->name, shape->least, shape->most, bits);
+}
+
+bool key_time(struct reader *reader, const struct key *key, const struct node *node, struct fraction *seconds)
+{
+	const struct shape *shape = shape_of(key, SHAPE_QUANTITY);
+	return node != NULL && read_time(reader, node, key->name, shape->sign == QUANTITY_POSITIVE, seconds);
 }
 
 // For "13..15": the same range as the language writes it.

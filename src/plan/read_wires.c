@@ -8,6 +8,11 @@
 
 #define MISSING_NAMED 4
 
+const struct shape address_wire_shape = {.kind = SHAPE_TEXT, .pattern = "(state|kind|bank)\\.[0-9]+|low|high|-"};
+const struct shape data_wire_shape = {
+	.kind = SHAPE_TEXT, .pattern = "(next|kind)\\.[0-9]+|-|" IDENTIFIER_PATTERN, .also = ALSO_TRUTH,
+};
+
 // Splits "state.12" into its word and number. False if the text has another form.
 static bool parse_numbered(const char *text, const char *word, unsigned *number)
 {

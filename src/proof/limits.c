@@ -12,8 +12,8 @@ struct setting {
 };
 
 static const struct setting settings[ITEM_COUNT] = {
-	[ITEM_LINE_RATE] = {MOVE_LENGTH, false, 1}, // of the period
-	[ITEM_CYCLES_PER_LINE] = {MOVE_LENGTH, false, 1},
+	[ITEM_LINE_RATE] = {MOVE_LENGTH, true, 1}, // of the period
+	[ITEM_CYCLES_PER_LINE] = {MOVE_LENGTH, true, 1},
 	[ITEM_FRONT_PORCH] = {MOVE_EDGE, true, -1},
 	[ITEM_SYNC_WIDTH] = {MOVE_EDGE, false, 1},
 	[ITEM_BREEZEWAY] = {MOVE_EDGE, false, 1},
@@ -46,6 +46,7 @@ static bool turn(struct fraction *value)
 	return value->numerator == 0 || fraction_divide(fraction_whole(1), *value, value);
 }
 
+// A rate of 0 or less bounds no period.
 static bool turn_rate(struct shift *shift)
 {
 	const struct interval rates = shift->values;
@@ -53,7 +54,7 @@ static bool turn_rate(struct shift *shift)
 	shift->values = (struct interval){rates.high, rates.low};
 	shift->limit.has_low = limit.has_high;
 	shift->limit.low = limit.high;
-	shift->limit.has_high = limit.has_low;
+	shift->limit.has_high = limit.has_low && limit.low.numerator > 0;
 	shift->limit.high = limit.low;
 	shift->dimension = DIMENSION_TIME;
 	return turn(&shift->values.low) && turn(&shift->values.high) && turn(&shift->limit.nominal) && turn(&shift->limit.low) &&
@@ -83,20 +84,35 @@ static bool keeps_shifted(const struct shift *shift, int64_t cells, struct inter
 	return limit_judge(&shift->limit, *moved).kept;
 }
 
-// The fewest cells whose shift keeps the limit; 0 if none does. The first candidate comes from the margin; accuracy may ask for
-// one more.
+#define MOST_TRIES 1000 // one or two for any clock that a board has
+
+// How many cells a miss asks at least, and how many are sure to be enough for it: with the accuracy a cell counts for more or less.
+static bool bound_cells(const struct shift *shift, struct fraction miss, int64_t *least, int64_t *enough)
+{
+	struct interval cell = {shift->cell, shift->cell};
+	struct fraction fewest, most;
+	if (shift->clock->has_accuracy && !interval_widen(&cell, shift->dimension, shift->clock->accuracy_ppm))
+		return false;
+	if (!fraction_divide(miss, cell.high, &fewest) || !fraction_divide(miss, cell.low, &most))
+		return false;
+	*least = -fraction_floor(fewest);
+	*enough = -fraction_floor(most);
+	return true;
+}
+
+// The fewest cells whose shift keeps the limit; 0 if none does.
 static int64_t fewest_cells(const struct shift *shift, struct interval *moved)
 {
 	struct interval measured = shift->values;
-	struct fraction cells, below;
+	struct fraction below;
+	int64_t least, enough;
 	if (shift->clock->has_accuracy && !interval_widen(&measured, shift->dimension, shift->clock->accuracy_ppm))
 		return 0;
 	const struct judgement judgement = limit_judge(&shift->limit, measured);
-	if (!judgement.has_margin || !fraction_divide(judgement.margin, shift->cell, &cells))
+	if (!judgement.has_margin || !bound_cells(shift, judgement.margin, &least, &enough))
 		return 0;
 	const bool too_small = shift->limit.has_low && fraction_subtract(measured.low, shift->limit.low, &below) && below.numerator < 0;
-	const int64_t least = -fraction_floor(cells);
-	for (int64_t count = least; count <= least + 1; count++)
+	for (int64_t count = least; count <= enough && count - least < MOST_TRIES; count++)
 		if (keeps_shifted(shift, too_small ? count : -count, moved))
 			return too_small ? count : -count;
 	return 0;
@@ -126,7 +142,9 @@ static void find_move(const struct trial *trial, enum limit_item item, const str
 	const int64_t cells = setting->sign * fewest_cells(&shift, &moved);
 	if (cells == 0)
 		return;
-	const struct measured_at *at = cells * setting->sign > 0 ? &measured->low_at : &measured->high_at;
+	// The line with the highest rate is the one with the lowest period.
+	const bool of_low = (cells * setting->sign > 0) != (limit_item_facts(item)->dimension == DIMENSION_FREQUENCY);
+	const struct measured_at *at = of_low ? &measured->low_at : &measured->high_at;
 	const uint32_t cell = setting->at_start ? at->from_cell : at->to_cell;
 	if (cell == UINT32_MAX || (setting->move == MOVE_EDGE && !has_room(trial->timeline, cell, cells)))
 		return;
@@ -152,7 +170,8 @@ static void judge_item(struct trial *trial, struct limits_result *limits, enum l
 	bool fits = measured->known;
 	if (fits && plan->clock.has_accuracy) {
 		fits = interval_widen(&row->values, limit_item_facts(item)->dimension, plan->clock.accuracy_ppm);
-		row->widened = fraction_compare(row->values.low, measured->values.low) != 0;
+		row->widened = fraction_compare(row->values.low, measured->values.low) != 0 ||
+		               fraction_compare(row->values.high, measured->values.high) != 0;
 	}
 	for (unsigned grade = 0; grade < GRADE_COUNT; grade++) {
 		struct limit_verdict *verdict = &row->grades[grade];
@@ -191,6 +210,20 @@ static bool flaw_fails(struct trial *trial, const char *flaw)
 	return reason != NULL;
 }
 
+static bool limit_binds(const struct plan *plan, enum limit_item item)
+{
+	const struct limit *limit = standard_limit(plan->standard, item, plan->grade);
+	return limit != NULL && (limit->has_low || limit->has_high);
+}
+
+// A monitor that never sees a field begin shows nothing that stands still.
+static bool lacks_vertical_sync(const struct plan *plan, const struct measurement *measurement)
+{
+	return measurement->flaw == NULL && measurement->field_count == 0 &&
+	       (!measurement->separate || plan->role_signal[ROLE_VERTICAL_SYNC] >= 0) &&
+	       (limit_binds(plan, ITEM_FIELD_RATE) || limit_binds(plan, ITEM_FRAME_RATE));
+}
+
 static const struct measurement *measure_trial(const struct trial *trial)
 {
 	const struct timeline *timeline = trial->timeline;
@@ -223,7 +256,8 @@ bool prove_limits(struct trial *trial)
 		return false;
 	if (limits.measurement->strays > 0 && !strays_fail(trial, limits.measurement))
 		return false;
-	if (limits.missed[plan->grade] > 0)
+	limits.no_vertical_sync = lacks_vertical_sync(plan, limits.measurement);
+	if (limits.missed[plan->grade] > 0 || limits.no_vertical_sync)
 		proof->verdict = VERDICT_FAIL;
 	if (trial->first || (proof->verdict == VERDICT_FAIL && !failed_before))
 		trial->proofs->limits = limits;

@@ -129,7 +129,7 @@ struct limit_verdict {
 	struct judgement judgement;
 	enum limit_move move;
 	int64_t move_cells;        // later if positive; of lines: longer
-	uint32_t move_cell;        // of the frame: where the edge is, or the picture begins
+	uint32_t move_cell;        // of the frame: where the edge is, the picture begins, or a line that is too short or too long
 	struct interval moved;     // what would be measured then, accuracy included
 };
 
@@ -142,6 +142,7 @@ struct limit_row {
 struct limits_result {
 	const struct measurement *measurement; // NULL without a standard, or if the frame does not close
 	struct limit_row rows[ITEM_COUNT];
+	bool no_vertical_sync;     // though there is a signal for it, and the standard asks for a rate of fields or frames
 	unsigned kept[GRADE_COUNT], missed[GRADE_COUNT], unknown[GRADE_COUNT]; // limits that bind
 };
 

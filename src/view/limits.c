@@ -25,7 +25,13 @@ static const struct limit *limit_at(const struct proofs *proofs, enum limit_item
 	return standard_limit(plan_of_proofs(proofs)->standard, item, grade);
 }
 
-// Values at 3 decimals, as times are everywhere; frequencies at 6.
+// Values at 3 decimals, as times are everywhere; frequencies below 100 at 6, since the limits of field rates are as narrow as that.
+static unsigned places_of(enum limit_item item, struct fraction scaled)
+{
+	const int64_t size = scaled.numerator / scaled.denominator;
+	return limit_item_facts(item)->dimension == DIMENSION_FREQUENCY && size > -100 && size < 100 ? 6 : 3;
+}
+
 static void put_value(struct text *out, enum limit_item item, struct fraction value)
 {
 	struct fraction scaled;
@@ -33,7 +39,7 @@ static void put_value(struct text *out, enum limit_item item, struct fraction va
 	if (facts->is_polarity)
 		put_limit_value(out, item, value);
 	else if (limit_value_in_unit(item, value, &scaled))
-		text_put_rounded(out, scaled, strcmp(facts->unit, "MHz") == 0 ? 6 : 3);
+		text_put_rounded(out, scaled, places_of(item, scaled));
 	else
 		text_put(out, "?");
 }
@@ -51,11 +57,35 @@ static void put_interval(struct text *out, enum limit_item item, struct interval
 	text_release(&high);
 }
 
-static void put_unit(struct text *out, enum limit_item item)
+// The unit of a number that was put as `number`: 1 line, but 2 lines.
+static void put_unit(struct text *out, enum limit_item item, const char *number)
 {
 	const char *unit = limit_item_facts(item)->unit;
-	if (unit[0] != '\0')
-		text_printf(out, " %s", unit);
+	const enum dimension dimension = limit_item_facts(item)->dimension;
+	const bool counted = dimension == DIMENSION_LINES || dimension == DIMENSION_CYCLES || dimension == DIMENSION_PULSES;
+	const size_t length = strlen(unit) - (counted && unit[0] != '\0' && strcmp(number, "1") == 0);
+	if (length > 0)
+		text_printf(out, " %.*s", (int)length, unit);
+}
+
+static void put_value_unit(struct text *out, enum limit_item item, struct fraction value)
+{
+	struct text number = {0};
+	put_value(&number, item, value);
+	text_put(out, text_string(&number));
+	put_unit(out, item, text_string(&number));
+	out->failed = out->failed || number.failed;
+	text_release(&number);
+}
+
+static void put_interval_unit(struct text *out, enum limit_item item, struct interval values)
+{
+	struct text numbers = {0};
+	put_interval(&numbers, item, values);
+	text_put(out, text_string(&numbers));
+	put_unit(out, item, text_string(&numbers));
+	out->failed = out->failed || numbers.failed;
+	text_release(&numbers);
 }
 
 // The table.
@@ -191,6 +221,52 @@ static void put_burstless(struct text *out, const struct measurement *measuremen
 	text_release(&words);
 }
 
+// How far the picture's middle is from the standard's, at its farther end. False if it is not known.
+static bool find_offset(const struct proofs *proofs, enum limit_item item, struct fraction *offset)
+{
+	const struct measured *measured = &proofs->limits.measurement->items[item];
+	const struct limit *limit = limit_at(proofs, item, plan_of_proofs(proofs)->grade);
+	struct fraction low, high, both;
+	if (limit == NULL || !limit->has_nominal || !measured->known || !fraction_subtract(measured->values.low, limit->nominal, &low) ||
+	    !fraction_subtract(measured->values.high, limit->nominal, &high) || !fraction_add(low, high, &both))
+		return false;
+	*offset = both.numerator < 0 ? low : high;
+	return true;
+}
+
+static void put_offset(struct text *words, enum limit_item item, struct fraction offset, const char *less, const char *more)
+{
+	const bool is_less = offset.numerator < 0;
+	if (offset.numerator == 0) {
+		text_printf(words, "neither %s nor %s", less, more);
+		return;
+	}
+	if (is_less)
+		offset.numerator = -offset.numerator;
+	put_value_unit(words, item, offset);
+	text_printf(words, " %s", is_less ? less : more);
+}
+
+static void put_centring(struct text *out, const struct proofs *proofs)
+{
+	struct fraction across, down;
+	struct text words = {0};
+	if (!find_offset(proofs, ITEM_HORIZONTAL_CENTRE, &across) || !find_offset(proofs, ITEM_VERTICAL_CENTRE, &down))
+		return;
+	if (across.numerator == 0 && down.numerator == 0) {
+		text_put(&words, "the picture's middle is where the standard has it");
+	} else {
+		text_put(&words, "the picture's middle, from the standard's: ");
+		put_offset(&words, ITEM_HORIZONTAL_CENTRE, across, "to the left", "to the right");
+		text_put(&words, ", ");
+		put_offset(&words, ITEM_VERTICAL_CENTRE, down, "up", "down");
+	}
+	text_put_wrapped(out, text_string(&words), 0, 2);
+	text_put(out, "\n");
+	out->failed = out->failed || words.failed;
+	text_release(&words);
+}
+
 void view_limits(struct text *out, const struct proofs *proofs)
 {
 	const enum limit_grade grade = proofs->limits.measurement == NULL ? GRADE_MONITOR : plan_of_proofs(proofs)->grade;
@@ -212,6 +288,7 @@ void view_limits(struct text *out, const struct proofs *proofs)
 	text_printf(out, ", grade %s%s\n", limit_grade_name(grade),
 	            plan_of_proofs(proofs)->clock.has_accuracy ? "; margins with the clock's accuracy" : "");
 	view_columns(out, &table, TERMINAL_CHARACTERS);
+	put_centring(out, proofs);
 	put_all_unmeasured(out, proofs);
 	put_burstless(out, proofs->limits.measurement);
 }
@@ -221,7 +298,9 @@ void view_limits(struct text *out, const struct proofs *proofs)
 static void put_grade_counts(struct text *out, const struct limits_result *limits, enum limit_grade grade)
 {
 	const unsigned judged = limits->kept[grade] + limits->missed[grade];
-	if (limits->missed[grade] == 0)
+	if (judged == 0)
+		text_printf(out, "no limit was judged at %s grade", limit_grade_name(grade));
+	else if (limits->missed[grade] == 0)
 		text_printf(out, "all %u limits kept at %s grade", judged, limit_grade_name(grade));
 	else
 		text_printf(out, "%u of %u limits kept at %s grade", limits->kept[grade], judged, limit_grade_name(grade));
@@ -254,17 +333,14 @@ bool limit_is_missed(const struct proofs *proofs, enum limit_item item)
 
 static void put_allowed(struct text *out, const struct limit *limit)
 {
-	if (limit->has_low && limit->has_high && fraction_compare(limit->low, limit->high) == 0) {
-		put_value(out, limit->item, limit->low);
-	} else if (limit->has_low && limit->has_high) {
+	const bool range = limit->has_low && limit->has_high && fraction_compare(limit->low, limit->high) != 0;
+	if (!limit->has_low || !limit->has_high)
+		text_put(out, limit->has_low ? "at least " : "at most ");
+	if (range) {
 		put_value(out, limit->item, limit->low);
 		text_put(out, " to ");
-		put_value(out, limit->item, limit->high);
-	} else {
-		text_put(out, limit->has_low ? "at least " : "at most ");
-		put_value(out, limit->item, limit->has_low ? limit->low : limit->high);
 	}
-	put_unit(out, limit->item);
+	put_value_unit(out, limit->item, limit->has_high ? limit->high : limit->low);
 }
 
 static void put_place(struct text *out, const struct timeline *timeline, uint32_t cell)
@@ -274,25 +350,40 @@ static void put_place(struct text *out, const struct timeline *timeline, uint32_
 	            timeline_region_name(timeline, cell));
 }
 
-// Whether what was measured is too low, rather than too high.
+// Whether what was measured is too low, rather than too high; of both, whichever is worse.
 static bool is_too_low(const struct proofs *proofs, const struct limit *limit)
 {
-	return limit->has_low && fraction_compare(proofs->limits.rows[limit->item].values.low, limit->low) < 0;
+	const struct limit_row *row = &proofs->limits.rows[limit->item];
+	struct fraction above;
+	return limit->has_low && fraction_subtract(row->values.low, limit->low, &above) && above.numerator < 0 &&
+	       fraction_compare(above, row->grades[limit->grade].judgement.margin) == 0;
 }
 
-// Lines without burst may be as many as they should, but others.
-static bool put_other_lines(struct text *out, const struct limits_result *limits, const struct limit *limit)
+// Where an exact clock would keep the limit: what misses it is the accuracy.
+static void put_accuracy(struct text *out, const struct proofs *proofs, const struct limit *limit)
 {
-	if (limit->item != ITEM_LINES_WITHOUT_BURST || limits->rows[limit->item].grades[limit->grade].judgement.margin.numerator < 0)
-		return false;
-	text_put(out, "lines without burst are as many as they should be, but not the standard's, field by field");
-	return true;
+	const struct limit_row *row = &proofs->limits.rows[limit->item];
+	if (!row->widened || !limit_judge(limit, proofs->limits.measurement->items[limit->item].values).kept)
+		return;
+	text_put(out, " by an exact clock");
+}
+
+static void put_miss_by(struct text *out, const struct proofs *proofs, const struct limit *limit)
+{
+	struct fraction off = proofs->limits.rows[limit->item].grades[limit->grade].judgement.margin;
+	if (off.numerator >= 0 && limit->item == ITEM_LINES_WITHOUT_BURST)
+		text_put(out, ", but they are not those that the standard has");
+	if (off.numerator >= 0 || limit_item_facts(limit->item)->is_polarity)
+		return;
+	off.numerator = -off.numerator;
+	text_put(out, ": ");
+	put_value_unit(out, limit->item, off);
+	text_put(out, is_too_low(proofs, limit) ? " too little" : " too much");
 }
 
 void put_limit_measured(struct text *out, const struct proofs *proofs, enum limit_item item)
 {
-	put_interval(out, item, proofs->limits.measurement->items[item].values);
-	put_unit(out, item);
+	put_interval_unit(out, item, proofs->limits.measurement->items[item].values);
 	text_put(out, ", allowed ");
 	put_allowed(out, limit_at(proofs, item, plan_of_proofs(proofs)->grade));
 }
@@ -301,22 +392,13 @@ void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_it
 {
 	const struct limit *limit = limit_at(proofs, item, plan_of_proofs(proofs)->grade);
 	const struct measured *measured = &proofs->limits.measurement->items[item];
-	struct fraction off = proofs->limits.rows[item].grades[limit->grade].judgement.margin;
 	const uint32_t cell = is_too_low(proofs, limit) ? measured->low_at.from_cell : measured->high_at.from_cell;
-	if (put_other_lines(out, &proofs->limits, limit))
-		return;
 	text_printf(out, "%s is ", limit_item_facts(item)->name);
-	put_interval(out, item, measured->values);
-	put_unit(out, item);
+	put_interval_unit(out, item, measured->values);
+	put_accuracy(out, proofs, limit);
 	text_put(out, ", allowed ");
 	put_allowed(out, limit);
-	if (off.numerator < 0 && !limit_item_facts(item)->is_polarity) {
-		off.numerator = -off.numerator;
-		text_put(out, ": ");
-		put_value(out, item, off);
-		put_unit(out, item);
-		text_put(out, is_too_low(proofs, limit) ? " too little" : " too much");
-	}
+	put_miss_by(out, proofs, limit);
 	if (cell == UINT32_MAX || item == ITEM_PIXEL_CLOCK || item == ITEM_SUBCARRIER)
 		return;
 	text_put(out, "; at ");
@@ -330,16 +412,29 @@ static void put_direction(struct text *out, int64_t cells, const char *less, con
 	text_printf(out, " %s", cells < 0 ? less : more);
 }
 
+// Whether it is not the length of all lines that misses, but one line that is unlike the others.
+static bool lines_differ(const struct proofs *proofs, enum limit_item item)
+{
+	const struct interval *values = &proofs->limits.measurement->items[item].values;
+	return (item == ITEM_LINE_RATE || item == ITEM_CYCLES_PER_LINE) && fraction_compare(values->low, values->high) != 0;
+}
+
 bool put_limit_move(struct text *out, const struct proofs *proofs, enum limit_item item)
 {
 	const struct limit_verdict *verdict = &proofs->limits.rows[item].grades[plan_of_proofs(proofs)->grade];
 	const struct timeline *timeline = proofs->timeline;
 	const uint32_t cell = verdict->move_cell, before = cell == 0 ? timeline->cell_count - 1 : cell - 1;
+	if (lines_differ(proofs, item)) {
+		text_put(out, "lines differ: let all line types last as long, and sync begin at the same place in each");
+		return true;
+	}
 	switch (verdict->move) {
 	case MOVE_NONE:
 		return false;
 	case MOVE_EDGE:
 		text_printf(out, "move the edge between \"%s\" and \"%s\"", timeline_region_name(timeline, before), timeline_region_name(timeline, cell));
+		if (timeline_place(timeline, cell).cell == 0)
+			text_put(out, ", where lines begin,");
 		put_direction(out, verdict->move_cells, "earlier", "later");
 		break;
 	case MOVE_PICTURE:
@@ -354,7 +449,6 @@ bool put_limit_move(struct text *out, const struct proofs *proofs, enum limit_it
 	if (item == ITEM_LINE_RATE)
 		return true;
 	text_put(out, ": then ");
-	put_interval(out, item, verdict->moved);
-	put_unit(out, item);
+	put_interval_unit(out, item, verdict->moved);
 	return true;
 }

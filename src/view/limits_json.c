@@ -30,6 +30,19 @@ static void put_move(json_t **object, const struct timeline *timeline, const str
 	json_put(object, "move", move);
 }
 
+// Of the picture's middle, how far it is from the standard's.
+static void put_offset(json_t **object, const struct proofs *proofs, const struct limit *limit)
+{
+	const struct measured *measured = &proofs->limits.measurement->items[limit->item];
+	struct fraction low, high;
+	const bool centre = limit->item == ITEM_HORIZONTAL_CENTRE || limit->item == ITEM_VERTICAL_CENTRE;
+	if (!centre || !limit->has_nominal || !measured->known || !fraction_subtract(measured->values.low, limit->nominal, &low) ||
+	    !fraction_subtract(measured->values.high, limit->nominal, &high))
+		return;
+	put_value(object, "offset_low", limit->item, low);
+	put_value(object, "offset_high", limit->item, high);
+}
+
 static json_t *verdict_json(const struct proofs *proofs, const struct limit *limit)
 {
 	const struct limit_verdict *verdict = &proofs->limits.rows[limit->item].grades[limit->grade];
@@ -40,7 +53,7 @@ static json_t *verdict_json(const struct proofs *proofs, const struct limit *lim
 		put_value(&object, "low", limit->item, limit->low);
 	if (limit->has_high)
 		put_value(&object, "high", limit->item, limit->high);
-	json_put(&object, "source", json_string(limit->source));
+	put_offset(&object, proofs, limit);
 	if (!verdict->known || !verdict->judgement.binds)
 		return object;
 	json_put(&object, "kept", json_boolean(verdict->judgement.kept));
@@ -137,6 +150,8 @@ void json_put_limits(json_t **object, const struct proofs *proofs)
 		if (limits->rows[item].grades[GRADE_STUDIO].has_limit || limits->rows[item].grades[GRADE_MONITOR].has_limit)
 			json_append(&items, item_json(proofs, (enum limit_item)item));
 	json_put(object, "items", items);
+	if (limits->no_vertical_sync)
+		json_put(object, "no_vertical_sync", json_true());
 	for (uint32_t index = 0; index < measurement->field_count && index < MOST_FIELDS; index++)
 		json_append(&fields, field_json(measurement, index));
 	json_put(object, "fields", fields);

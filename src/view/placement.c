@@ -43,6 +43,8 @@ void view_placement(struct text *out, const struct timeline *timeline)
 {
 	const struct placements *placements = timeline->placements;
 	struct text words = {0};
+	if (placements != NULL && placements->unweighed)
+		text_put(out, "stretch: auto placed leftmost: what each way does to the limits could not be reckoned\n");
 	if (placements == NULL || !placements->judged)
 		return;
 	text_put(&words, "stretch: auto placed, by limits: ");

@@ -64,11 +64,13 @@ void view_must(struct text *out, const char *name, bool kept, const char *words,
 //                 "items": [ { "item", "unit": of all values below, which are exact, beside NAME_rounded; polarities are 1 or -1,
 //                 "low", "high": measured over the frame, "accuracy_low", "accuracy_high" (where the clock's accuracy widens
 //                 them), "low_at", "high_at": { PLACE } where the first of them begins, or in place of all these
-//                 "not_measured": why, in words; "studio", "monitor": { "nominal", "low", "high" (those that there are), "source",
+//                 "not_measured": why, in words; "studio", "monitor": { "nominal", "low", "high" (those that there are; list standards has their sources),
+//                 of the picture's middle "offset_low", "offset_high" (measured less nominal),
 //                 and if one of low and high is there "kept", "margin" (to the nearer bound; below zero: missed by so much),
 //                 "share" (of the tolerance; not where low is high), "move": what would keep it, if whole cells do: { "what":
 //                 "edge", "picture" or "line length", "cells" (later, or longer; negative: earlier, shorter), "line_type", of an
 //                 edge "after_region", "before_region": between which it is } } } ],
+//                 "no_vertical_sync": true (only where it never comes, though there is a signal for it: then limits fails),
 //                 "fields": the first 16, from 0V to 0V [ { "begins": "at a line" or "half way through a line",
 //                 "lines_without_burst": [[first, last], …] by the standard's numbers (if it numbers lines) } ],
 //                 "burst_pauses_kept": these are the standard's (the same) }

@@ -169,11 +169,18 @@ static void detail_limits(struct report *report)
 {
 	if (report->proofs->proof[PROOF_LIMITS].counterexample.present)
 		detail_counterexample(report, PROOF_LIMITS);
+	if (report->proofs->limits.no_vertical_sync) {
+		text_put(&report->words, "vertical sync never comes: there is no broad pulse, and no signal with the role vertical sync is asserted");
+		end_detail(report);
+	}
 	for (size_t item = 0; item < ITEM_COUNT; item++) {
 		if (!limit_is_missed(report->proofs, (enum limit_item)item))
 			continue;
 		put_limit_miss(&report->words, report->proofs, (enum limit_item)item);
 		end_detail(report);
+		// Where pulses are stray, what is measured may be of them.
+		if (report->proofs->limits.measurement->strays > 0)
+			continue;
 		text_put(&report->words, "hint: ");
 		if (put_limit_move(&report->words, report->proofs, (enum limit_item)item))
 			end_detail(report);

@@ -45,6 +45,7 @@ report='  musts: all hold, the frame closes, as before
   frame: 262 lines, 26462 cells, 238944 ticks, 59.923 Hz, as before
   colour: in step as asked, 228 cycles a line, repeats after 1 line and 1 frame, as before
   speed of the chips: in time, 422.571 ns to spare, as before
+  limits: 24 of 24 kept at monitor grade of composite-525, 1 not measured, as before
 chips
   rom0: stays as it is
   rom1: stays as it is

@@ -99,6 +99,27 @@ for ((number = 1; number <= total; number += 11)); do
 done
 holds "near: $refusals of $total allocations refused" test "$refusals" -gt 200 -a "$cases_failed" -eq 0
 
+# The same of a plan that is measured, with cells that are placed by its limits: what is said is whole, or nothing is.
+cp "$OLDPWD/tools/fuzz/plans/limits-composite.yaml" limits.yaml
+"$program" check limits.yaml >whole.check
+same 'limits: status without faults' 0 $?
+LD_PRELOAD=./faults.so FAULTS_COUNT=count "$program" check limits.yaml >/dev/null
+refusals=0
+total=$(cat count)
+# Those before read the plan and the catalogue.
+for ((number = total - 450; number <= total; number++)); do
+	LD_PRELOAD=./faults.so FAULTS_ALLOCATION=$number "$program" check limits.yaml >stdout 2>stderr
+	status=$?
+	case $status in
+	0) cmp -s whole.check stdout || fail "limits: allocation $number: status 0, but another result" ;;
+	3) refusals=$((refusals + 1))
+		[ -s stderr ] || fail "limits: allocation $number: status 3, but no word"
+		[ ! -s stdout ] || cmp -s whole.check stdout || fail "limits: allocation $number: status 3, but another result" ;;
+	*) fail "limits: allocation $number: status $status" "$(head -n 3 stderr)" ;;
+	esac
+done
+holds "limits: $refusals of 450 allocations refused" test "$refusals" -gt 300
+
 # A signal that comes while the first file is flushed ends the program only after all files are whole.
 for signal in INT TERM HUP QUIT; do
 	rm -rf out

@@ -62,4 +62,7 @@ fi
 refused_below check check "$plan"
 refused_below build build "$plan" --listing -o "$work/out"
 refused_below prove prove --json "$plan" "$work/images"
+refused_below fit fit --standard composite-625 --columns 80
+refused_below schema schema
+refused_below lift lift --near "$plan" "$work/images" -o "$work/out/lifted.yaml"
 finish

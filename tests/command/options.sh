@@ -48,15 +48,15 @@ is_json() {
 ends 'no command' 2
 same 'no command: help on standard error' 'Usage: scanlatch COMMAND [options] ARGUMENTS' "$(head -n 1 stderr)"
 same 'no command: nothing on standard output' '' "$stdout"
-refuses 'unknown command' 'scanlatch: there is no command "frobnicate"; the commands are check, build, prove, diff, list' \
+refuses 'unknown command' 'scanlatch: there is no command "frobnicate"; the commands are check, build, prove, diff, draw, fit, lift, list, schema' \
 	frobnicate good.yaml
 refuses 'option before a command' 'scanlatch: unknown option "--json" before a command' --json check good.yaml
-for command in draw sheet fit lift readback probe export schema; do
+for command in sheet readback probe export; do
 	ends "later command $command" 2 $command good.yaml
 	same "later command $command: says so" "scanlatch: the command \"$command\" is not carried out by this version yet" \
 		"$stderr"
 done
-for command in check build prove diff list; do
+for command in check build prove diff fit list schema; do
 	refuses "$command: unknown option" "scanlatch $command: unrecognized option '--frobnicate'" $command --frobnicate
 	refuses "$command: unknown short option" "scanlatch $command: invalid option -- 'x'" $command -x
 	refuses "$command: bad colour" "scanlatch $command: --color: wanted auto, always or never, found \"blue\"" \
@@ -87,6 +87,9 @@ refuses 'prove: a folder and more' \
 refuses 'list: nothing' 'scanlatch list: wanted one catalogue (parts, standards or crystals), found 0' list
 refuses 'list: two' 'scanlatch list: wanted one catalogue (parts, standards or crystals), found 2' list parts standards
 refuses 'list: unknown' 'scanlatch list: there is no catalogue of "ships": wanted parts, standards or crystals' list ships
+schemas='plan set board build check crystals diff fit manifest parts prove standards'
+refuses 'schema: unknown' "scanlatch schema: there is no schema of \"ships\"; there are ${schemas// /, }" schema ships
+refuses 'schema: two' 'scanlatch schema: wanted at most one name, found 2' schema plan set
 holds 'no refused command line wrote anything' test ! -e out
 
 # Help and version, wherever they stand.
@@ -94,7 +97,7 @@ version=$("$SCANLATCH" --version)
 holds 'version has its form' grep -Eqx 'scanlatch [0-9]+\.[0-9]+\.[0-9]+' <<<"$version"
 same 'short version' "$version" "$("$SCANLATCH" -V)"
 same 'short help' "$("$SCANLATCH" --help)" "$("$SCANLATCH" -h)"
-for command in check build prove diff list; do
+for command in check build prove diff fit list schema; do
 	holds "help names $command" grep -q "^  $command " <<<"$("$SCANLATCH" --help)"
 	ends "$command --help" 0 $command --help
 	same "$command --help: usage" "Usage: scanlatch $command [options]" \
@@ -204,6 +207,10 @@ json 'list --json' 0 list --json parts
 same 'list --json: a part' '17' \
 	"$(python3 -c 'import json
 print(*[memory["address_pins"] for memory in json.load(open("stdout"))["memories"] if memory["name"] == "28C010"])')"
+for name in $schemas; do
+	json "schema $name" 0 schema $name
+	holds "schema $name: help names it" grep -qE "^ .*\<$name\>" <<<"$("$SCANLATCH" schema --help)"
+done
 ends 'list parts' 0 list parts
 holds 'list parts: the part, its size and its grades' \
 	grep -Eq '^28C010 +128K x 8 +131072 +17 +8 +DIP-32 +120, 150, 200 ns$' stdout

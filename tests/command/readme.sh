@@ -48,24 +48,35 @@ PYTHON
 }
 
 holds "check shows what the README shows" compare 1
-holds "build shows what the README shows" compare 2
 
-# The blocks of plain shell: the path (not needed here), the patched chip, the mistaken plan.
+# The blocks of plain shell: the path (not needed here), limits, the patched chip, the mistaken plan.
 shell_block() { awk -v wanted="$1" '/^```/ { if (inside) inside = 0; else if ($0 == "```sh") inside = ++count == wanted; next } inside' "$readme"; }
-holds "the README patches a chip" eval "$(shell_block 3)"
+holds "the README changes a limit" eval "$(shell_block 3)"
+holds "a missed limit looks as the README shows" compare 2
+holds "the mended one looks as the README shows" compare 3
+holds "build shows what the README shows" compare 4
+
+holds "the README patches a chip" eval "$(shell_block 4)"
 same "the patch is one bit" 1 "$(cmp -l images/tide-board-60.rom0.bin rom0-readback.bin | wc -l)"
-holds "prove shows what the README shows" compare 3
+holds "prove shows what the README shows" compare 5
 
-holds "the README makes mistakes" eval "$(shell_block 4)"
-holds "mistakes look as the README shows" compare 4
+holds "the README makes mistakes" eval "$(shell_block 5)"
+holds "mistakes look as the README shows" compare 6
 
-holds "two stages look as the README shows" compare 5
-holds "a set looks as the README shows" compare 6
-holds "the README moves a burst" eval "$(shell_block 5)"
-holds "diff shows what the README shows" compare 7
-holds "the README builds what was burned" eval "$(shell_block 6)"
-holds "build --near shows what the README shows" compare 8
-same "the README shows eight commands" "$(block 9)" ""
+holds "two stages look as the README shows" compare 7
+holds "a set looks as the README shows" compare 8
+holds "the README moves a burst" eval "$(shell_block 6)"
+holds "diff shows what the README shows" compare 9
+holds "the README builds what was burned" eval "$(shell_block 7)"
+holds "build --near shows what the README shows" compare 10
+holds "fit finds what the README shows" compare 11
+holds "fit writes as the README shows" compare 12
+holds "the plan that fit wrote proves" eval "scanlatch build board.yaml -o board"
+holds "a drawing looks as the README shows" compare 13
+holds "the README makes a board" eval "$(shell_block 10)"
+holds "lift looks as the README shows" compare 14
+holds "the lifted plan builds" scanlatch build lifted.yaml -o again
+same "the README shows fourteen commands" "$(block 15)" ""
 
 # A block of YAML that is a plan's or a set's own text: each of its lines stands there, but for what a comment says.
 yaml_block() { awk -v wanted="$1" '/^```/ { if (inside) inside = 0; else if ($0 == "```yaml") inside = ++count == wanted; next } inside' "$readme"; }
@@ -75,7 +86,8 @@ stands_in() { # block, plan
 	[ -s shown ] && ! grep -vxFf whole shown
 }
 holds "the README quotes the tide board" stands_in 1 plans/tide-board-60.yaml
-holds "the README quotes the mooring board" stands_in 2 plans/mooring-board.yaml
-holds "the README quotes the pilot station" stands_in 3 plans/pilot-station.yaml
+holds "the README quotes the harbour mouth" stands_in 2 plans/harbour-mouth.yaml
+holds "the README quotes the mooring board" stands_in 3 plans/mooring-board.yaml
+holds "the README quotes the pilot station" stands_in 4 plans/pilot-station.yaml
 
 finish

@@ -23,6 +23,11 @@ SIGNAL_NAMES = ["sync", "blank", "burst", "load", "vs", "hs", "mark_1", "z", "st
 ROLES = ["composite sync", "horizontal sync", "vertical sync", "blanking", "burst gate", "plain"]
 REGION_NAMES = ["front porch", "sync", "breezeway", "burst", "back porch", "picture", "Rand rechts", "café 3/4", "true", "12",
 	"a: b", "#5", "- dash", "[x]", "{y}", "*star", "&and", "!bang", "%", "comma, too", "null", "quay ↔ pier"]
+STANDARDS = ["composite-525", "composite-625", "mono-525", "component-525", "component-625", "dmt-640x480-60"]
+LIMITED_ITEMS = ["horizontal sync width", "front porch", "breezeway", "burst start", "burst length", "back porch",
+	"horizontal blanking", "picture start", "picture width"]
+RASTER_PARTS = [("front porch", ["blank"], 3), ("sync", ["blank", "sync"], 8), ("breezeway", ["blank"], 2),
+	("burst", ["blank", "burst"], 4), ("back porch", ["blank"], 8)]
 MOST_CELLS = 5000
 
 
@@ -332,6 +337,22 @@ class Generator:
 		bits += [name for name, signal in self.tree["signals"].items() if "from" not in signal or signal["from"] == "data"]
 		self.tree.update(chips_for(self.chance, self.bits, bits))
 
+	def make_standard(self):
+		"""What the plan is measured against: advice, but where `stretch: auto` has a choice."""
+		if not self.maybe(0.9 if self.automatic else 0.15):
+			return
+		limits = {}
+		cell = self.clock.cell / self.clock.master * 10**6
+		for item in self.chance.sample(LIMITED_ITEMS, self.number(0, 5)):
+			low, high = sorted(cell * Fraction(self.number(1, 120), 10) for _ in range(2))
+			limits[item] = self.pick([f"at least {low} us", f"at most {high} us", f"{low} us to {high} us", f"{high} us +- {low} us",
+				f"{low} us ({low / 2} us to {high} us)", f"{low} us", f"exactly {high} us"])
+		base = self.pick(STANDARDS)
+		own = {"base": base, "limits": limits} if self.maybe(0.5) else {"limits": limits}
+		self.tree["standard"] = own if limits else base
+		if self.maybe(0.6):
+			self.tree["grade"] = self.pick(["studio", "monitor"])
+
 	def some_defaults(self):
 		for signal in self.tree["signals"].values():
 			if "from" not in signal and self.maybe(0.1):
@@ -340,7 +361,7 @@ class Generator:
 	def plan(self):
 		self.make_clock()
 		if self.maybe(0.06):
-			self.stretching = self.colour = False
+			self.stretching = self.colour = self.automatic = False
 			self.tree["clock"].pop("stretch", None)
 			self.clock = Clock(self.tree["clock"])
 			self.make_aligned_count()
@@ -357,7 +378,63 @@ class Generator:
 		self.make_timing()
 		self.make_sweep()
 		self.some_defaults()
+		self.make_standard()
 		return self.tree
+
+
+class Raster(Generator):
+	"""Lines that a monitor would know, with cells to stretch that the limits of a standard may place; three lines of vertical sync."""
+
+	def make_clock(self):
+		super().make_clock()
+		clock = self.tree["clock"]
+		clock.setdefault("stretch", self.length_in_dots(self.number(1, 4), self.clock.dot))
+		self.clock = Clock(clock)
+		self.stretching = True
+
+	def make_signals(self):
+		self.tree["signals"] = {
+			"sync": {"role": "composite sync", "active": "low"}, "blank": {"role": "blanking", "active": "high"},
+			"burst": {"role": "burst gate", "active": self.pick(["high", "low"])}, "wide": {"role": "stretch", "active": "high"}}
+		for name in ("sync", "wide"):
+			self.tree["signals"][name]["lead"] = self.pick(["0 cells", "1 cell", "-2 cells"])
+		self.plain_signals = ["sync", "blank", "burst"]
+
+	def marked(self, region):
+		return {**region, "stretch": "auto"} if self.maybe(0.5) else region
+
+	def make_lines(self):
+		self.colour = self.automatic = True
+		parts = [(name, asserted, self.number(1, most)) for name, asserted, most in RASTER_PARTS]
+		picture = self.number(30, 60)
+		cells = sum(width for _, _, width in parts) + picture
+		regions = [self.marked({"region": name, "cells": str(width), "assert": asserted}) for name, asserted, width in parts]
+		regions[1]["stretch"] = "auto"
+		regions.append(self.marked({"region": "picture", "fill": "true", "assert": []}))
+		porch = str(parts[0][2])
+		vertical = [{"region": "front porch", "cells": porch, "assert": ["blank"]},
+			{"region": "broad sync", "fill": "true", "assert": ["blank", "sync"], "stretch": "auto"},
+			self.marked({"region": "serration", "cells": str(self.number(2, 8)), "assert": ["blank"]})]
+		border = {"like": "picture", "change": [{"region": "picture", "assert": ["blank"]}]}
+		self.tree["lines"] = {"picture": {"cells": str(cells), "regions": regions}, "border": border,
+			"vertical": {"cells": str(cells), "regions": vertical}}
+		self.names = list(self.tree["lines"])
+
+	def make_frame(self):
+		self.blocks = [("picture", self.number(4, 20)), ("border", self.number(1, 6)), ("vertical", 3)]
+		self.tree["frame"] = [{"repeat": str(repeat), "line": name} for name, repeat in self.blocks]
+		self.frame_lines = sum(repeat for _, repeat in self.blocks)
+
+	def make_phase(self, line_ticks):
+		super().make_phase(line_ticks + self.number(1, 4) * self.clock.stretch)
+
+	def make_field_signals(self):
+		"""None: what they need of the states is seen to elsewhere."""
+
+
+def generator_of(chance, name, seed):
+	kind = Tight if seed % 4 == 0 else Raster if seed % 4 == 3 else Generator
+	return kind(chance, name)
 
 
 def write_plan(folder, seed):
@@ -366,7 +443,7 @@ def write_plan(folder, seed):
 	for attempt in range(100):
 		chance = random.Random(f"{seed} {attempt}")
 		try:
-			tree = Tight(chance, name).plan() if seed % 4 == 0 else Generator(chance, name).plan()
+			tree = generator_of(chance, name, seed).plan()
 		except Refused:
 			continue
 		with open(os.path.join(folder, f"{name}.yaml"), "w", encoding="utf-8") as file:

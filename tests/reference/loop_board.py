@@ -4,22 +4,17 @@
     loop_board.py compare PLAN TRACE [SKIP]   TRACE must be the plan's timeline, cell by cell, for more than a frame.
                                               It may begin with up to SKIP cells before the first state (0 if left out)
 
-Wiring and timeline come from the plan's text alone, by the reader in oracle_plan.py; nothing but the memories' contents
-comes from images.
+Wiring and timeline come from the plan's text alone, by the reader in oracle_plan.py (but for the cells that limits chose to
+stretch: see there); nothing but the memories' contents comes from images.
 """
 
 import os
 import sys
 
 from oracle_chips import chips_of
-from oracle_plan import Plan
+from oracle_plan import plan_of_file
 
 CELLS_AFTER_FRAME = 50
-
-
-def read_plan(path):
-	with open(path, encoding="utf-8") as file:
-		return Plan(file.read())
 
 
 def start_of(plan):
@@ -123,7 +118,7 @@ def write(path, text):
 
 
 def make(path, images, out):
-	plan = read_plan(path)
+	plan = plan_of_file(path)
 	chips = chips_of(plan)
 	write(os.path.join(out, "board.v"), "\n".join(board_lines(plan, chips)) + "\n")
 	for chip in chips:
@@ -165,7 +160,7 @@ def read_trace(path):
 
 
 def compare(path, trace_path, skip="0"):
-	plan = read_plan(path)
+	plan = plan_of_file(path)
 	trace = list(read_trace(trace_path))
 	home = next((cell for cell, (_, state, _) in enumerate(trace) if state == start_of(plan)), len(trace))
 	if home > int(skip) or len(trace) != plan.cells + CELLS_AFTER_FRAME + int(skip):

@@ -17,7 +17,9 @@ judge prints `ok`, `FAILED` or `undecided`, then PLAN and what was found, and fa
 #     the right. Stretched cells count as normal ones: a time says nothing of how long its region lasts once cells are
 #     stretched.
 #  2. stretch: auto (2.5): the line type alone must meet the phase: N times its cycles are whole. Cells stretched by
-#     `stretch: N` count, and stay. Leftmost means the first cells of the first marked region, then of the next.
+#     `stretch: N` count, and stay. Leftmost means the first cells of the first marked region, then of the next. Where
+#     the limits of a standard decide, any so many cells of marked regions will do here: which are better is measured,
+#     and this reader measures nothing. The program says which it took (SCANLATCH check --json).
 #  3. phase: every N lines (2.3): from the start of every line of the endless sequence, across the frame's end too,
 #     the N lines that follow have whole cycles. A phase that repeats sooner, after a divisor of N, is in step after N
 #     too. Left out, it is free.
@@ -72,7 +74,7 @@ from oracle_line_states import feasible_lines
 from oracle_machine import (Machine, asserted_pins, cell_ticks, check_colour, check_holds, check_lengths, check_signals,
 	check_spare_rows, check_sweeps, spare_states)
 from oracle_manifest import check_manifest, load
-from oracle_plan import Plan, Refused
+from oracle_plan import Refused, plan_of_file
 from oracle_states import feasible
 
 
@@ -81,8 +83,7 @@ class Undecided(Exception):
 
 
 def read_plan(path):
-	with open(path, encoding="utf-8") as file:
-		plan = Plan(file.read())
+	plan = plan_of_file(path)
 	if plan.machine.form == "line-frame":
 		oracle_line_frame.check_agreements(plan)
 	return plan

@@ -14,6 +14,10 @@ trap 'rm -rf "$work"' EXIT
 mkdir "$work/plans"
 
 holds 'plans are made' "$python" -B tests/reference/generate.py "$work/plans" "$first" "$count"
+placed=$(grep -l standard "$work"/plans/*.yaml | while IFS= read -r plan; do
+	"$SCANLATCH" check "$plan" 2>"$work/stderr"
+done | grep -c '^stretch: auto placed')
+holds "at least $((count / 20)) plans in which limits place stretched cells, found $placed" test "$placed" -ge $((count / 20))
 mapfile -t examples < <(grep -L "^scanlatch-set" plans/*.yaml)
 build_all "${examples[@]}" "$work"/plans/*.yaml
 judge_all

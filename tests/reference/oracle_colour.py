@@ -14,7 +14,7 @@ import sys
 from fractions import Fraction
 
 from oracle_chips import Fault
-from oracle_plan import Plan, Refused
+from oracle_plan import Refused, plan_of_file
 
 # Lines beyond which repeats are not tried one after the other.
 MOST_LINES = 20_000
@@ -122,9 +122,9 @@ def check_plan(plan, document):
 def judge(path):
 	if os.path.getsize(path + ".json") == 0:
 		return "refused", "no document"
-	with open(path, encoding="utf-8") as file, open(path + ".json", encoding="utf-8") as document:
+	with open(path + ".json", encoding="utf-8") as document:
 		try:
-			return "ok", check_plan(Plan(file.read()), json.load(document))
+			return "ok", check_plan(plan_of_file(path), json.load(document))
 		except Refused as reason:
 			return "refused", str(reason)
 		except Fault as fault:

@@ -4,7 +4,10 @@ Everything is exact: whole ticks, whole cells, fractions.Fraction. Plans are tak
 tested elsewhere); Refused is raised for what the pages call an error and a random plan may run into.
 """
 
+import json
+import os
 import re
+import subprocess
 from fractions import Fraction
 
 import yaml
@@ -212,8 +215,8 @@ class LineType:
 		return [cell for region in self.regions if region.stretch == "auto"
 			for cell in range(region.first, region.first + region.width)]
 
-	def stretch_automatically(self, clock):
-		"""Adds the fewest stretched cells that meet the phase, leftmost in the marked regions."""
+	def stretch_automatically(self, clock, chosen):
+		"""Adds the fewest stretched cells that meet the phase: `chosen` of the marked regions, or the leftmost if that is None."""
 		candidates = self.automatic_cells()
 		if not candidates:
 			return
@@ -221,9 +224,16 @@ class LineType:
 			raise Refused("stretch: auto needs a subcarrier and a phase in lines")
 		for count in range(len(candidates) + 1):
 			if (clock.phase[0] * clock.cycles(self.ticks(clock) + count * clock.stretch)).denominator == 1:
-				self.stretched.update(candidates[:count])
+				self.stretched.update(candidates[:count] if chosen is None else self.placed(candidates, chosen, count))
 				return
 		raise Refused(f"line {self.name}: no number of stretched cells meets the phase")
+
+	def placed(self, candidates, chosen, count):
+		"""The cells of runs (first cell, count of marked cells from there on), which are marked, and so many in all."""
+		cells = [cell for first, length in chosen for cell in candidates[candidates.index(first):][:length]]
+		if len(set(cells)) != count or len(cells) != count:
+			raise ValueError(f"line {self.name}: stretch: auto placed {chosen}, wanted {count} marked cells")
+		return cells
 
 	def ticks(self, clock):
 		return self.cells * clock.cell + len(self.stretched) * clock.stretch
@@ -308,11 +318,15 @@ class LineFrameMachine:
 
 
 class Plan:
-	"""The whole plan with its timeline: cell by cell what is asserted, what is held, and each signal's planned pin."""
+	"""The whole plan with its timeline: cell by cell what is asserted, what is held, and each signal's planned pin.
 
-	def __init__(self, text):
+	`placed`: where limits of a standard decided where `stretch: auto` stretches, runs of cells by line type; else None.
+	"""
+
+	def __init__(self, text, placed=None):
 		tree = yaml.load(text, Loader=yaml.BaseLoader)
 		self.tree = tree
+		self.placed = placed
 		self.name = tree["name"]
 		self.clock = Clock(tree["clock"])
 		self.signals = [Signal(name, signal or {}) for name, signal in tree["signals"].items()]
@@ -332,7 +346,7 @@ class Plan:
 		if self.stretch_signal:
 			line.stretched.update(cell for region in line.regions if self.stretch_signal.name in region.asserted
 				for cell in range(region.first, region.first + region.width))
-		line.stretch_automatically(self.clock)
+		line.stretch_automatically(self.clock, None if self.placed is None else self.placed.get(name, []))
 		if line.stretched and not self.stretch_signal:
 			raise Refused(f"line {name}: stretched without a stretch signal")
 		return line
@@ -415,3 +429,29 @@ def shifted(levels, lead):
 	"""What the pin must show so that hardware that delays by `lead` cells comes out right."""
 	lead %= len(levels)
 	return levels[lead:] + levels[:lead]
+
+
+def asks_for_limits(tree):
+	"""Whether the limits of a standard may decide where `stretch: auto` stretches."""
+	regions = (region for line in tree["lines"].values() for region in line.get("regions") or line.get("change") or ())
+	return "standard" in tree and any(region.get("stretch") == "auto" for region in regions)
+
+
+def placed_by_program(path):
+	"""Runs of stretched cells by line type, as `check --json` tells them; None if it tells of none."""
+	check = subprocess.run([os.environ["SCANLATCH"], "check", "--json", path], capture_output=True, check=False)
+	best = (json.loads(check.stdout or "{}").get("stretch_auto") or {}).get("best")
+	if best is None:
+		return None
+	placed = {}
+	for run in best["stretched"]:
+		placed.setdefault(run["line"], []).append((run["first_cell"], run["cells"]))
+	return placed
+
+
+def plan_of_file(path):
+	"""The plan in a file. Where limits place stretched cells, the program says where; that they are as few as can be and in
+	marked regions is seen to here, and that no other place is better in tests/layout."""
+	with open(path, encoding="utf-8") as file:
+		text = file.read()
+	return Plan(text, placed_by_program(path) if asks_for_limits(yaml.load(text, Loader=yaml.BaseLoader)) else None)

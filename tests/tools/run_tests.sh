@@ -50,6 +50,13 @@ ok      groups: 3
 ok      good.sh: 3
 8 passed, 0 failed
 status 0' "$(outcome good groups good.sh)"
+# Each waits for the other, so that it passes only where both run at the same time.
+put waits.sh 'for step in $(seq 100); do [ ! -e follows.began ] || break; sleep 0.1; done; [ -e follows.began ] && touch waits.began && echo "1 passed, 0 failed"'
+put follows.sh 'touch follows.began; for step in $(seq 100); do [ ! -e waits.began ] || break; sleep 0.1; done; [ -e waits.began ] && echo "1 passed, 0 failed"'
+same 'two at the same time, in the order given' 'ok      waits.sh: 1
+ok      follows.sh: 1
+2 passed, 0 failed
+status 0' "$(TEST_JOBS=2 outcome waits.sh follows.sh)"
 same 'a failed case' 'FAILED  bad: 1 passed, 1 failed, exit status 1
 ok      good: 2
 3 passed, 1 failed

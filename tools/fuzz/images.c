@@ -162,6 +162,27 @@ static void judge_proofs(const scanlatch_images *images)
 	scanlatch_proofs_destroy(proofs);
 }
 
+// What is lifted lays out the images' loop, and with states pinned gives back their bytes, as far as the messages do not say otherwise: the library
+// itself holds one against the other, and refuses what is not so as beyond the language.
+static void judge_lift(const scanlatch_images *images, bool near)
+{
+	const struct scanlatch_lift_options options = {.near = near};
+	scanlatch_messages *messages = fuzz_need(scanlatch_messages_create());
+	scanlatch_lift *lift = scanlatch_lift_images(images, &options, messages);
+	FUZZ_REQUIRE((lift != NULL) == (scanlatch_messages_errors(messages) == 0));
+	for (size_t index = 0; index < scanlatch_messages_count(messages); index++) {
+		const enum rule rule = diagnostics_rule(messages->diagnostics, index);
+		FUZZ_REQUIRE(rule == RULE_LIFT_RASTER || rule == RULE_LIFT_LOOPS || (near && rule == RULE_LIFT_NEAR));
+	}
+	if (lift != NULL) {
+		FUZZ_REQUIRE(scanlatch_lift_found(lift) == (scanlatch_messages_count(messages) > 0));
+		scanlatch_free(fuzz_need(scanlatch_lift_text(lift)));
+		scanlatch_free(fuzz_need(scanlatch_lift_json(lift)));
+	}
+	scanlatch_lift_destroy(lift);
+	scanlatch_messages_destroy(messages);
+}
+
 // Reads the bytes as the file of the plan's chip. True if they are an image.
 static bool judge_images(const scanlatch_plan *plan, const uint8_t *bytes, size_t length, scanlatch_messages *messages)
 {
@@ -172,6 +193,8 @@ static bool judge_images(const scanlatch_plan *plan, const uint8_t *bytes, size_
 	if (read) {
 		FUZZ_REQUIRE(scanlatch_images_read(images, "U1", "again.hex", bytes, length, messages));
 		judge_proofs(images);
+		judge_lift(images, false);
+		judge_lift(images, true);
 	}
 	scanlatch_free(fuzz_need(scanlatch_messages_text(messages, false)));
 	scanlatch_images_destroy(images);

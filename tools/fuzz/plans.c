@@ -4,6 +4,7 @@
 #include "naive_stages.h"
 
 #define SPOILT 10u // sets of images for each plan
+#define LARGEST_PICTURE 4000000u
 #define PROVED_CELLS 300000u
 #define PROVED_STATE_BITS 20u
 
@@ -16,7 +17,10 @@ static const char *const words[] = {
 	"chips", "part", "speed", "label", "address", "next", "bank", "parts", "access", "timing", "share", "margin",
 	"latch", "delay", "setup", "sweep", "within", "Hz", "MHz", "us", "ns", "ticks", "dots", "ppm", "28C16",
 	"28C64", "28C256", "27C1024", "27C080", "XROM", "col", "row", "0x10", "standard", "grade", "kind", "stage",
-	"step", "line-frame", "loop", "kind.0", "state.0", "bits", NULL,
+	"step", "line-frame", "loop", "kind.0", "state.0", "bits", "composite", "horizontal", "vertical", "burst", "gate",
+	"composite-525", "composite-625", "dmt-640x480-60", "studio", "monitor", "base", "limits", "exactly", "at least", "at most",
+	"line rate", "horizontal sync width", "front porch", "burst length in cycles", "picture top", "lines without burst", "kHz", "pulses",
+	"cycles", NULL,
 };
 
 static void require_text(char *text)
@@ -165,6 +169,25 @@ static void spoil_and_prove(const scanlatch_images *made, uint64_t *random, scan
 	scanlatch_images_destroy(read);
 }
 
+// Images that were made show at their pins what the plan means, leads undone: so the same is measured, and judged, of both.
+static void require_limits(const scanlatch_images *made, const scanlatch_proofs *proofs)
+{
+	struct proofs *planned = fuzz_need(proofs_of_plan(made->plan->members[0].timeline));
+	const struct limits_result *one = &planned->limits, *other = &proofs->proofs[0]->limits;
+	FUZZ_REQUIRE(planned->proof[PROOF_LIMITS].verdict == verdict_of(proofs, PROOF_LIMITS));
+	FUZZ_REQUIRE((one->measurement == NULL) == (other->measurement == NULL));
+	for (unsigned item = 0; one->measurement != NULL && item < ITEM_COUNT; item++) {
+		const struct measured *plan = &one->measurement->items[item], *pins = &other->measurement->items[item];
+		FUZZ_REQUIRE(plan->known == pins->known);
+		FUZZ_REQUIRE(fraction_compare(plan->values.low, pins->values.low) == 0 && fraction_compare(plan->values.high, pins->values.high) == 0);
+		FUZZ_REQUIRE(plan->low_at.from_cell == pins->low_at.from_cell && plan->high_at.to_cell == pins->high_at.to_cell);
+		FUZZ_REQUIRE(fraction_compare(plan->values.low, plan->values.high) <= 0);
+	}
+	for (unsigned grade = 0; grade < GRADE_COUNT; grade++)
+		FUZZ_REQUIRE(one->kept[grade] == other->kept[grade] && one->missed[grade] == other->missed[grade]);
+	proofs_destroy(planned);
+}
+
 static void judge_images(const scanlatch_images *made, uint64_t random, bool colour_kept, scanlatch_messages *messages)
 {
 	const struct timeline *timeline = made->plan->members[0].timeline;
@@ -175,6 +198,7 @@ static void judge_images(const scanlatch_images *made, uint64_t random, bool col
 	const bool sweep_kept = verdict_of(proofs, PROOF_SWEEP) != VERDICT_FAIL;
 	FUZZ_REQUIRE((verdict_of(proofs, PROOF_COLOUR) != VERDICT_FAIL) == colour_kept);
 	FUZZ_REQUIRE(scanlatch_proofs_failed(proofs, false) == !(colour_kept && sweep_kept));
+	require_limits(made, proofs);
 	require_json(scanlatch_manifest(proofs, SCANLATCH_FILE_BIN | SCANLATCH_FILE_HEX));
 	scanlatch_proofs_destroy(proofs);
 	require_text(scanlatch_images_listing(made));
@@ -183,6 +207,55 @@ static void judge_images(const scanlatch_images *made, uint64_t random, bool col
 	scanlatch_images_destroy(read);
 	for (unsigned spoilt = 0; spoilt < SPOILT; spoilt++)
 		spoil_and_prove(made, &random, messages);
+}
+
+// Elements of a picture are nested: each end tag ends one that is open, and at its end none is.
+static void require_picture(char *picture)
+{
+	long depth = 0;
+	FUZZ_REQUIRE(picture != NULL && strlen(picture) < LARGEST_PICTURE);
+	for (const char *at = strchr(picture, '<'); at != NULL; at = strchr(at + 1, '<')) {
+		const char *end = strchr(at, '>');
+		FUZZ_REQUIRE(end != NULL);
+		if (at[1] == '/')
+			depth--;
+		else if (at[1] != '?' && end[-1] != '/')
+			depth++;
+		FUZZ_REQUIRE(depth >= 0);
+	}
+	FUZZ_REQUIRE(depth == 0 && strcmp(picture + strlen(picture) - 7, "</svg>\n") == 0);
+	scanlatch_free(picture);
+}
+
+// A picture, or an error more than before: not all plans have what is to be drawn.
+static void require_picture_or_error(char *picture, const scanlatch_messages *messages, size_t errors)
+{
+	if (picture != NULL)
+		require_picture(picture);
+	else
+		FUZZ_REQUIRE(scanlatch_messages_errors(messages) == errors + 1 && !scanlatch_messages_system(messages));
+}
+
+// What is drawn of a plan that compiles.
+static void judge_pictures(const scanlatch_plan *plan, const scanlatch_images *made, uint64_t random)
+{
+	scanlatch_messages *messages = fuzz_need(scanlatch_messages_create());
+	char line[24];
+	snprintf(line, sizeof line, "%u", (unsigned)(random % plan->members[0].timeline->line_count));
+	require_picture(scanlatch_draw_line(plan, 0, NULL, messages));
+	require_picture(scanlatch_draw_frame(plan, 0, false, messages));
+	require_picture(scanlatch_draw_table(made, 0, messages));
+	require_text(scanlatch_draw_line_text(plan, 0, NULL, (unsigned)(random % 300), random % 2 == 0, messages));
+	FUZZ_REQUIRE(scanlatch_messages_count(messages) == 0);
+	char *interleaved = scanlatch_draw_frame(plan, 0, true, messages);
+	require_picture_or_error(interleaved, messages, 0);
+	size_t errors = scanlatch_messages_errors(messages);
+	char *phase = scanlatch_draw_phase(plan, 0, messages);
+	require_picture_or_error(phase, messages, errors);
+	errors = scanlatch_messages_errors(messages);
+	char *numbered = scanlatch_draw_line(plan, 0, line, messages); // it may be the name of a type that no line has
+	require_picture_or_error(numbered, messages, errors);
+	scanlatch_messages_destroy(messages);
 }
 
 // True if it compiles.
@@ -198,6 +271,7 @@ static bool judge_plan(const scanlatch_plan *plan, uint64_t random, scanlatch_me
 	}
 	FUZZ_REQUIRE(scanlatch_messages_errors(messages) == 0);
 	judge_images(made, random, kept, messages);
+	judge_pictures(plan, made, random);
 	scanlatch_images_destroy(made);
 	return true;
 }
