@@ -12,7 +12,7 @@ static const char help[] =
 	"name: plan.\n"
 	"\n"
 	"  plan, set, board                the languages of these files\n"
-	"  check, build, prove, sheet, fit what these commands print with --json\n"
+	"  check, build, prove, diff, sheet, fit  what these commands print with --json\n"
 	"  parts, standards, crystals      what list prints of these with --json\n"
 	"  manifest                        the manifest that build writes beside the images\n"
 	"\n"

@@ -68,8 +68,14 @@ static void put_speed(struct text *out, const struct proofs *proofs)
 
 static void put_limits(struct text *out, const struct proofs *proofs)
 {
-	if (proofs->timeline->plan->standard != NULL)
-		put_limits_figures(out, proofs);
+	const struct plan *plan = proofs->timeline->plan;
+	const struct limits_result *limits = &proofs->limits;
+	if (plan->standard == NULL)
+		return;
+	text_printf(out, "%u of %u kept at %s grade of %s", limits->kept[plan->grade], limits->kept[plan->grade] + limits->missed[plan->grade],
+	            limit_grade_name(plan->grade), strcmp(plan->standard->name, "own") == 0 ? "the plan's own" : plan->standard->name);
+	if (limits->unknown[plan->grade] > 0)
+		text_printf(out, ", %u not measured", limits->unknown[plan->grade]);
 }
 
 static void compare_facts(struct comparing *comparing, const struct proofs *old, const struct proofs *now)

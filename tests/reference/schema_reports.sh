@@ -107,6 +107,25 @@ printf "\\$(printf %03o $(($(od -An -tu1 -j2 -N1 "$work/looping/flicker.rom0.bin
 	dd of="$work/looping/flicker.rom0.bin" bs=1 seek=2 conv=notrunc status=none
 report looping.prove prove tests/good/flicker.yaml "$work/looping"
 
+# Plans that differ, do not, and go together with images; sets; a board that is near to what it was.
+report same.diff diff plans/tide-board-60.yaml plans/tide-board-60.yaml
+report clocks.diff diff plans/tide-board-60.yaml plans/tide-board-50.yaml
+report forms.diff diff plans/mooring-board.yaml plans/pier-clock.yaml
+report counted.diff diff plans/mooring-board.yaml plans/mooring-board-counted.yaml
+report set.diff diff plans/pilot-station.yaml plans/pilot-station-625.yaml
+report images.diff diff plans/pier-clock.yaml "$work/images/pier-clock"
+sed 's/repeat: 3,/repeat: 4,/' plans/ferry-queue.yaml >"$work/plans/near.yaml"
+report edited.diff diff plans/ferry-queue.yaml "$work/plans/near.yaml"
+report near.build build "$work/plans/near.yaml" --near "$work/images/ferry-queue" -o "$work/images/near"
+# A set with more banks, and a chip with another label.
+for plan in plans/pilot-station-*.yaml; do
+	sed 's/28C010, speed: 150 ns/39SF020A, speed: 70 ns/' "$plan" >"$work/plans/$(basename "$plan")"
+done
+sed 's/^bank: .*/bank: 2 bits/' plans/pilot-station.yaml >"$work/plans/wider.yaml"
+report wider.diff diff plans/pilot-station.yaml "$work/plans/wider.yaml"
+sed 's/label: U1/label: U9/' tests/good/scrambled.yaml >"$work/plans/relabelled.yaml"
+report relabelled.diff diff tests/good/scrambled.yaml "$work/plans/relabelled.yaml"
+described diff "$work"/reports/*.diff
 report several.check check plans/pier-clock.yaml plans/pilot-station.yaml plans/mooring-board.yaml
 report several.build build plans/pier-clock.yaml plans/pilot-station.yaml -o "$work/images/several"
 report colour.fit fit --standard composite-525 --columns 80 --width 80 --top 3
