@@ -188,7 +188,7 @@ void view_chip_rows(struct text *out, const struct plan *board, size_t chip, con
 	struct chip_view view = {.out = out, .plan = board, .chip = &board->chips[chip], .image = image};
 	const uint32_t addresses = (uint32_t)1 << view.chip->part->address_pins;
 	view.state_bits = machine_stage(&board->machine, view.chip->stage)->state_bits;
-	for (unsigned pin = 0; pin < view.chip->part->address_pins; pin++)
+	for (unsigned pin = 0; pin < view.chip->part->address_pins && pin < LIMIT_ADDRESS_PINS; pin++)
 		view.state_pins |= (uint32_t)(view.chip->address[pin].kind == ADDRESS_STATE) << pin;
 	for (unsigned pin = 0; pin < view.chip->part->data_pins; pin++) {
 		const struct data_wire wire = view.chip->data[pin];
