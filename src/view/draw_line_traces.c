@@ -5,9 +5,6 @@
 #include "view/draw_line.h"
 #include "view/figures.h"
 
-#define TRACE_HEIGHT PX(48)
-#define HIGH_Y PX(7)
-#define LOW_Y PX(35)
 #define COMPOSITE_HEIGHT PX(170)
 #define COMPOSITE_TOP PX(16)
 #define COMPOSITE_PLOT PX(130)
@@ -64,10 +61,10 @@ static void draw_signal_run(const struct line_drawing *drawing, const struct sig
 	if (run->value == 1) {
 		text_printf(&words, "%s soft", palette_hue(palette_of_role(signal->role))->name);
 		const int64_t x = line_x(drawing, run->tick);
-		svg_box(svg, text_string(&words), x, y + HIGH_Y, line_x(drawing, run->tick + run->ticks) - x, LOW_Y - HIGH_Y);
+		svg_box(svg, text_string(&words), x, y + LINE_HIGH_Y, line_x(drawing, run->tick + run->ticks) - x, LINE_LOW_Y - LINE_HIGH_Y);
 		words.length = 0;
 	}
-	open_run(drawing, "run", run, y, TRACE_HEIGHT);
+	open_run(drawing, "run", run, y, LINE_TRACE_HEIGHT);
 	svg_whole(svg, "data-level", level);
 	svg_whole(svg, "data-asserted", run->value);
 	text_printf(&words, "%s %s, %sasserted", signal->name, level == 1 ? "high" : "low", run->value == 1 ? "" : "not ");
@@ -84,7 +81,7 @@ static void draw_trace_path(const struct line_drawing *drawing, size_t index, in
 	struct text data = {0}, class = {0};
 	for (uint32_t cell = 0; cell < drawing->shape.cells;) {
 		const struct shape_run run = shape_signal_run(&drawing->shape, index, cell);
-		const int64_t level_y = y + (shape_level(signal, run.value) == 1 ? HIGH_Y : LOW_Y);
+		const int64_t level_y = y + (shape_level(signal, run.value) == 1 ? LINE_HIGH_Y : LINE_LOW_Y);
 		text_put(&data, cell == 0 ? "M" : "V");
 		if (cell == 0) {
 			svg_put_length(&data, line_x(drawing, 0));
@@ -124,8 +121,8 @@ static void draw_trace_label(const struct line_drawing *drawing, const struct si
 	svg_fitted(svg, "name", PX(16), y + PX(18), ANCHOR_START, LINE_LEFT - PX(36), SVG_NAME_SIZE, signal->name);
 	put_signal_words(&words, signal);
 	svg_fitted(svg, "small", PX(16), y + PX(36), ANCHOR_START, LINE_LEFT - PX(36), 13, text_string(&words));
-	svg_text(svg, "small", LINE_LEFT - PX(6), y + HIGH_Y + PX(5), ANCHOR_END, "1");
-	svg_text(svg, "small", LINE_LEFT - PX(6), y + LOW_Y + PX(5), ANCHOR_END, "0");
+	svg_text(svg, "small", LINE_LEFT - PX(6), y + LINE_HIGH_Y + PX(5), ANCHOR_END, "1");
+	svg_text(svg, "small", LINE_LEFT - PX(6), y + LINE_LOW_Y + PX(5), ANCHOR_END, "0");
 	svg_release(svg, &words);
 }
 
@@ -135,11 +132,27 @@ static void draw_busy(const struct line_drawing *drawing, const struct signal *s
 	struct svg *svg = drawing->svg;
 	struct text words = {0};
 	text_printf(&words, "%s soft", palette_hue(palette_of_role(signal->role))->name);
-	svg_box(svg, text_string(&words), LINE_LEFT, y + HIGH_Y, drawing->width, LOW_Y - HIGH_Y);
+	svg_box(svg, text_string(&words), LINE_LEFT, y + LINE_HIGH_Y, drawing->width, LINE_LOW_Y - LINE_HIGH_Y);
 	words.length = 0;
 	text_printf(&words, "more than %" PRIu32 " edges: too close to be drawn", drawing->most_runs - 1);
 	svg_text(svg, "small", LINE_LEFT + drawing->width / 2, y + PX(26), ANCHOR_MIDDLE, text_string(&words));
 	svg_release(svg, &words);
+}
+
+bool draw_line_trace(const struct line_drawing *drawing, size_t index, int64_t y)
+{
+	const struct signal *signal = &drawing->shape.plan->signals[index];
+	if (shape_signal_runs(&drawing->shape, index, drawing->most_runs + 1) > drawing->most_runs) {
+		draw_busy(drawing, signal, y);
+		return false;
+	}
+	for (uint32_t cell = 0; cell < drawing->shape.cells;) {
+		const struct shape_run run = shape_signal_run(&drawing->shape, index, cell);
+		draw_signal_run(drawing, signal, &run, y);
+		cell = run.cell + run.cells;
+	}
+	draw_trace_path(drawing, index, y);
+	return true;
 }
 
 static void draw_trace(const struct line_drawing *drawing, size_t index, int64_t y)
@@ -152,16 +165,7 @@ static void draw_trace(const struct line_drawing *drawing, size_t index, int64_t
 	svg_attribute(svg, "data-active", signal->active_high ? "high" : "low");
 	svg_whole(svg, "data-lead", signal->lead_cells);
 	draw_trace_label(drawing, signal, y);
-	if (shape_signal_runs(&drawing->shape, index, drawing->most_runs + 1) > drawing->most_runs) {
-		draw_busy(drawing, signal, y);
-	} else {
-		for (uint32_t cell = 0; cell < drawing->shape.cells;) {
-			const struct shape_run run = shape_signal_run(&drawing->shape, index, cell);
-			draw_signal_run(drawing, signal, &run, y);
-			cell = run.cell + run.cells;
-		}
-		draw_trace_path(drawing, index, y);
-	}
+	draw_line_trace(drawing, index, y);
 	svg_close(svg);
 }
 
@@ -190,14 +194,14 @@ static void draw_stretched(const struct line_drawing *drawing, int64_t y, int64_
 
 int64_t line_traces_height(const struct line_drawing *drawing)
 {
-	return (int64_t)drawing->shape.plan->signal_count * TRACE_HEIGHT + PX(8);
+	return (int64_t)drawing->shape.plan->signal_count * LINE_TRACE_HEIGHT + PX(8);
 }
 
 void draw_line_traces(struct line_drawing *drawing, int64_t y)
 {
 	draw_stretched(drawing, y, line_traces_height(drawing));
 	for (size_t signal = 0; signal < drawing->shape.plan->signal_count; signal++)
-		draw_trace(drawing, signal, y + (int64_t)signal * TRACE_HEIGHT);
+		draw_trace(drawing, signal, y + (int64_t)signal * LINE_TRACE_HEIGHT);
 }
 
 int64_t line_composite_height(const struct line_drawing *drawing)
