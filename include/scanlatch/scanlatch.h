@@ -249,9 +249,11 @@ void scanlatch_difference_destroy(scanlatch_difference *difference);
  * must fails in the images that were read. Bytes may differ all the same: states can be allotted in many ways. Cannot fail. */
 bool scanlatch_difference_found(const scanlatch_difference *difference);
 
-/* The report for a terminal, as Markdown for a review, as JSON (shape: src/view/diff.h). NULL when memory is out. */
+/* The report for a terminal, as Markdown for a review, as JSON (shape: src/view/diff.h); as an SVG picture, the lines that differ over each other. NULL
+ * when memory is out. */
 char *scanlatch_difference_text(const scanlatch_difference *difference);
 char *scanlatch_difference_markdown(const scanlatch_difference *difference);
+char *scanlatch_difference_svg(const scanlatch_difference *difference);
 char *scanlatch_difference_json(const scanlatch_difference *difference);
 
 /* ---- Catalogues ---- */

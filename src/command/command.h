@@ -48,7 +48,7 @@ int command_sheet(int argument_count, char **arguments);
 
 // Long options without a short one: values above any character.
 enum { OPTION_COLOUR = 1000, OPTION_JSON, OPTION_STRICT, OPTION_UNPROVEN, OPTION_FORMAT, OPTION_RECORD, OPTION_LISTING,
-       OPTION_LINE, OPTION_BANK, OPTION_TEXT, OPTION_ASCII, OPTION_INTERLEAVE, OPTION_CUT, OPTION_NEAR, OPTION_GIT, OPTION_MARKDOWN };
+       OPTION_LINE, OPTION_BANK, OPTION_TEXT, OPTION_ASCII, OPTION_INTERLEAVE, OPTION_CUT, OPTION_NEAR, OPTION_GIT, OPTION_MARKDOWN, OPTION_SVG };
 
 // The options that every command has, for its table.
 #define COMMON_LONG_OPTIONS                                                                                                \

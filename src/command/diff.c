@@ -23,6 +23,8 @@ static const char help[] =
 	"      --git          take the arguments of git's external diff: see gitattributes(5)\n"
 	"      --json         one JSON document instead of text\n"
 	"      --markdown     tables for a review instead of text\n"
+	"      --svg          a picture instead of text: lines that differ, the old over the new, with marks from\n"
+	"                     where an edge was to where it is\n"
 	"      --color WHEN   auto, always or never: of messages\n"
 	"  -h, --help         print this help\n"
 	"  -V, --version      print the version\n";
@@ -31,6 +33,7 @@ static const struct option long_options[] = {
 	COMMON_LONG_OPTIONS,
 	{"git", no_argument, NULL, OPTION_GIT},
 	{"markdown", no_argument, NULL, OPTION_MARKDOWN},
+	{"svg", no_argument, NULL, OPTION_SVG},
 	{NULL, 0, NULL, 0},
 };
 
@@ -38,6 +41,7 @@ struct diff_options {
 	struct common_options common;
 	bool git;
 	bool markdown;
+	bool svg;
 };
 
 static bool take(void *options, int option, const char *value)
@@ -46,6 +50,7 @@ static bool take(void *options, int option, const char *value)
 	(void)value;
 	diff->git = diff->git || option == OPTION_GIT;
 	diff->markdown = diff->markdown || option == OPTION_MARKDOWN;
+	diff->svg = diff->svg || option == OPTION_SVG;
 	return true;
 }
 
@@ -99,6 +104,8 @@ static char *report(const scanlatch_difference *difference, const struct diff_op
 {
 	if (options->common.json)
 		return scanlatch_difference_json(difference);
+	if (options->svg)
+		return scanlatch_difference_svg(difference);
 	return options->markdown ? scanlatch_difference_markdown(difference) : scanlatch_difference_text(difference);
 }
 
@@ -210,8 +217,8 @@ int command_diff(int argument_count, char **arguments)
 	const int parsed = parse_options(&table, argument_count, arguments, &options);
 	if (parsed != PARSED)
 		return parsed;
-	if (options.common.json + options.markdown + options.git > 1)
-		return usage_error("diff", "wanted at most one of --git, --json and --markdown");
+	if (options.common.json + options.markdown + options.svg + options.git > 1)
+		return usage_error("diff", "wanted at most one of --git, --json, --markdown and --svg");
 	scanlatch_messages *messages = scanlatch_messages_create();
 	if (messages == NULL)
 		return memory_error();

@@ -126,7 +126,8 @@ static void summarize(struct comparing *comparing, struct comparison *comparison
 	                                  .facts = comparing->facts, .fact_count = comparing->fact_count, .count = comparing->count,
 	                                  .changes = sorted_changes(comparing), .same_clock = comparing->same_clock,
 	                                  .same_timeline = timelines_are_same(comparing), .same_meaning = true,
-	                                  .old_chip_of = comparing->old_chip_of};
+	                                  .old_chip_of = comparing->old_chip_of, .line_of = comparing->line_of,
+	                                  .signal_of = comparing->signal_of};
 	comparing->failed = comparing->failed || comparison->changes == NULL;
 	for (size_t index = 0; !comparing->failed && index < comparison->count; index++) {
 		const enum change_section section = comparison->changes[index].section;

@@ -55,6 +55,8 @@ struct comparison {
 	bool same_timeline;       // the same signals, holds and ticks in every cell of the same lines, at the same clock
 	bool same_meaning;        // no change but those of CHANGE_WORDS
 	const size_t *old_chip_of; // [now's chips]: the old plan's chip that a chip was, or SIZE_MAX
+	const size_t *line_of;     // [old's line types]: the new plan's line type that an old one is, or SIZE_MAX
+	const size_t *signal_of;   // [old's signals]: the same of signals
 };
 
 // Compares two plans that were laid out. NULL when memory is out; freed with comparison_destroy. The timelines must outlive it.

@@ -7,6 +7,7 @@
 #include "plan/read.h"
 #include "view/diff.h"
 #include "view/figures.h"
+#include "view/svg.h"
 
 struct scanlatch_difference {
 	struct arena *arena;
@@ -238,6 +239,14 @@ char *scanlatch_difference_markdown(const scanlatch_difference *difference)
 {
 	struct text text = {0};
 	view_difference_markdown(&text, &difference->difference);
+	return take_string(&text);
+}
+
+char *scanlatch_difference_svg(const scanlatch_difference *difference)
+{
+	struct text text = {0};
+	static const struct picture alone = {.id = "difference", .standalone = true};
+	text.failed = !view_difference_svg(&text, &alone, &difference->difference);
 	return take_string(&text);
 }
 

@@ -146,13 +146,19 @@ static void put_words(struct report *report, size_t indent)
 	text_put(&report->words, "");
 }
 
+void text_put_fact_value(struct text *out, const struct fact *fact)
+{
+	text_put(out, fact->now);
+	if (fact->same)
+		text_put(out, ", as before");
+	else if (fact->old != NULL)
+		text_printf(out, ", was %s", fact->old);
+}
+
 static void put_fact(struct report *report, const struct fact *fact)
 {
-	text_printf(&report->words, "%s: %s", fact->what, fact->now);
-	if (fact->same)
-		text_put(&report->words, ", as before");
-	else if (fact->old != NULL)
-		text_printf(&report->words, ", was %s", fact->old);
+	text_printf(&report->words, "%s: ", fact->what);
+	text_put_fact_value(&report->words, fact);
 	put_words(report, 2);
 }
 
@@ -186,6 +192,11 @@ static void put_heading(struct report *report, const struct plan_difference *pla
 	put_words(report, 0);
 }
 
+void put_only(struct text *out, const struct plan_difference *plan)
+{
+	text_printf(out, "only the %s set has %s", plan->only, plan->bank_count == 1 ? "it" : "them");
+}
+
 static void put_facts(struct report *report, const struct plan_difference *plan)
 {
 	put_heading(report, plan, "");
@@ -193,7 +204,7 @@ static void put_facts(struct report *report, const struct plan_difference *plan)
 		put_plan_facts(report, plan);
 		return;
 	}
-	text_printf(&report->words, "only the %s set has %s", plan->only, plan->bank_count == 1 ? "it" : "them");
+	put_only(&report->words, plan);
 	put_words(report, 2);
 }
 

@@ -57,6 +57,15 @@ void view_difference(struct text *out, const struct difference *difference);
 // For a review: a heading, and tables.
 void view_difference_markdown(struct text *out, const struct difference *difference);
 
+// A picture: what matters in words, and line types that differ at the pins, the old line over the new one; at most eight, and it says so if there are more.
+// See pictures.h. In it, for each: g.plot[data-old, data-new: the line types; data-old-line, data-new-line: of the frame; data-old-ticks,
+// data-new-ticks, data-left, data-old-width, data-new-width]; in it g.trace[data-trace: signal], in it g.side[data-side: "old", "new", "as
+// before", "old only" or "new only"] with the runs of view_line_svg, and path.moved[data-edge: "begins" or "ends" (to be asserted), data-old-cell,
+// data-old-tick: where it was, data-cell, data-tick: where it is]; one of either where the edge is gone or new.
+// False when memory is out.
+struct picture;
+bool view_difference_svg(struct text *out, const struct picture *picture, const struct difference *difference);
+
 // { "old", "new": names, "differs": see difference_found, "same_timeline", "same_bytes": of all images,
 //   "plans": [ { "banks": [numbers] (of sets), "only": "old" or "new" where only that set has the banks; then no further keys
 //                "same_timeline", "musts", "advice": { "old": [names of proofs that fail], "new": […] },
@@ -76,6 +85,10 @@ void put_difference_headline(struct text *out, const struct difference *differen
 // Each as a fact: see struct fact. Of a plan and images, `old` is NULL.
 struct fact musts_fact(const struct plan_difference *plan);
 struct fact advice_fact(const struct plan_difference *plan);
+// "525 lines, as before".
+void text_put_fact_value(struct text *out, const struct fact *fact);
+// "only the old set has it": of a plan without a comparison.
+void put_only(struct text *out, const struct plan_difference *plan);
 // "burn it again, …". What follows on all chips, in words; NULL if nothing does.
 void put_chip_fate(struct text *out, const struct chip_difference *chip);
 const char *chips_advice(const struct difference *difference);

@@ -49,11 +49,7 @@ static void put_fact(struct page *page, const struct fact *fact)
 {
 	text_put(page->out, "| ");
 	put_cell(page, fact->what);
-	text_put(&page->words, fact->now);
-	if (fact->same)
-		text_put(&page->words, ", as before");
-	else if (fact->old != NULL)
-		text_printf(&page->words, ", was %s", fact->old);
+	text_put_fact_value(&page->words, fact);
 	end_words(page, " |\n");
 }
 

@@ -66,6 +66,9 @@ void line_put_region_words(const struct line_drawing *drawing, struct text *word
 void draw_line_guides(struct line_drawing *drawing, int64_t from, int64_t to);
 void draw_line_rulers(struct line_drawing *drawing, int64_t y);
 
+// Puts what a signal is: "blanking, active high"; "active low, 1 cell early".
+void line_put_signal_words(struct text *words, const struct signal *signal);
+
 // One trace, without its name: runs that take the pointer, and the path of its level; or, where its edges are too many, words. Returns
 // whether it is drawn whole.
 bool draw_line_trace(const struct line_drawing *drawing, size_t signal, int64_t y);

@@ -101,8 +101,7 @@ static void draw_trace_path(const struct line_drawing *drawing, size_t index, in
 	svg_release(svg, &class);
 }
 
-// "blanking, active high", "plain, active low, 1 cell early".
-static void put_signal_words(struct text *words, const struct signal *signal)
+void line_put_signal_words(struct text *words, const struct signal *signal)
 {
 	if (signal->role != ROLE_PLAIN)
 		text_printf(words, "%s, ", role_name(signal->role));
@@ -119,7 +118,7 @@ static void draw_trace_label(const struct line_drawing *drawing, const struct si
 	struct svg *svg = drawing->svg;
 	struct text words = {0};
 	svg_fitted(svg, "name", PX(16), y + PX(18), ANCHOR_START, LINE_LEFT - PX(36), SVG_NAME_SIZE, signal->name);
-	put_signal_words(&words, signal);
+	line_put_signal_words(&words, signal);
 	svg_fitted(svg, "small", PX(16), y + PX(36), ANCHOR_START, LINE_LEFT - PX(36), 13, text_string(&words));
 	svg_text(svg, "small", LINE_LEFT - PX(6), y + LINE_HIGH_Y + PX(5), ANCHOR_END, "1");
 	svg_text(svg, "small", LINE_LEFT - PX(6), y + LINE_LOW_Y + PX(5), ANCHOR_END, "0");

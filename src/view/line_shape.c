@@ -15,16 +15,21 @@ static bool is_stretched(const struct line_shape *shape, uint32_t cell)
 
 bool line_shape_make(struct line_shape *shape, const struct timeline *timeline, uint32_t line, struct arena *arena)
 {
+	const uint64_t *pins = timeline_pins(timeline, arena);
+	return pins != NULL && line_shape_make_of(shape, timeline, pins, line, arena);
+}
+
+bool line_shape_make_of(struct line_shape *shape, const struct timeline *timeline, const uint64_t *pins, uint32_t line, struct arena *arena)
+{
 	const struct frame_line *in_frame = &timeline->lines[line];
 	const struct clock *clock = &timeline->plan->clock;
-	const uint64_t *pins = timeline_pins(timeline, arena);
 	*shape = (struct line_shape){.timeline = timeline, .plan = timeline->plan, .line = line,
 	                             .type = &timeline->plan->lines[in_frame->type], .laid = &timeline->types[in_frame->type]};
 	shape->cells = shape->laid->cells;
 	shape->ticks = shape->laid->ticks;
 	shape->asserted = timeline->asserted + in_frame->first_cell;
 	shape->tick_of_cell = arena_array(arena, (size_t)shape->cells + 1, sizeof *shape->tick_of_cell);
-	if (pins == NULL || shape->tick_of_cell == NULL)
+	if (shape->tick_of_cell == NULL)
 		return false;
 	shape->pins = pins + in_frame->first_cell;
 	for (uint32_t cell = 0; cell < shape->cells; cell++)

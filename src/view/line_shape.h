@@ -29,6 +29,8 @@ struct shape_run {
 
 // Makes the shape of a line in the arena, which must outlive it. False when memory is out.
 bool line_shape_make(struct line_shape *shape, const struct timeline *timeline, uint32_t line, struct arena *arena);
+// The same of a timeline whose pins (timeline_pins) the caller has; they must outlive the shape.
+bool line_shape_make_of(struct line_shape *shape, const struct timeline *timeline, const uint64_t *pins, uint32_t line, struct arena *arena);
 
 // The run of a signal that begins at a cell: value 1 where it is asserted. Cannot fail for from < cells.
 struct shape_run shape_signal_run(const struct line_shape *shape, size_t signal, uint32_t from);

@@ -67,7 +67,9 @@ static const char still_style[] =
 	"svg.scanlatch .edge{stroke-width:2.5px;fill:none}\n"
 	"svg.scanlatch .outline{fill:none}\n"
 	"svg.scanlatch .run{fill:none;pointer-events:all}\n"
-	"svg.scanlatch .missed{font-weight:600}\n";
+	"svg.scanlatch .missed{font-weight:600}\n"
+	"svg.scanlatch .was path,svg.scanlatch .was rect{opacity:.6}\n"
+	"svg.scanlatch .moved{stroke:" VERMILLION ";stroke-width:2px;fill:none}\n";
 
 // What differs by the paper. %s: paper, ink, muted ink, hair lines.
 static void put_paper(struct text *out, const char *paper, const char *ink, const char *muted, const char *hair)

@@ -40,6 +40,8 @@ enum hue palette_of_role(enum role role);
 //   .rule .hair .guide .axis  kinds of lines
 //   .HUE (sync, vertical, burst, blanking, picture, stretch, other) with
 //     .trace-line: a stroke of the hue; .soft: its fill, thinned; .plain: its fill
+//   .was    what stands for the old of two
+//   .moved  marks of what changed
 //   patterns are filled by fill="url(#ID-HUE)"
 void palette_put_style(struct text *out);
 

@@ -312,6 +312,14 @@ void svg_begin(struct svg *svg, struct text *out, const struct picture *picture,
 	svg_box(svg, "paper", 0, 0, width, height);
 }
 
+void svg_put_drawn(struct svg *svg, struct text *drawn)
+{
+	end_tag(svg);
+	text_put(svg->out, "\n");
+	text_put(svg->out, text_string(drawn));
+	svg_release(svg, drawn);
+}
+
 void svg_end(struct svg *svg)
 {
 	while (svg->depth > 0)

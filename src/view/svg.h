@@ -46,6 +46,9 @@ void svg_begin(struct svg *svg, struct text *out, const struct picture *picture,
 // Ends it, with all that is open, and a line's end.
 void svg_end(struct svg *svg);
 
+// Puts whole elements that another writer with the same picture has put into a text of its own, and releases that text.
+void svg_put_drawn(struct svg *svg, struct text *drawn);
+
 // Opens an element; its name is a constant. At most SVG_DEPTH are open.
 void svg_open(struct svg *svg, const char *element);
 // Closes the innermost.

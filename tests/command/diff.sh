@@ -1,5 +1,5 @@
 #!/bin/bash
-# What diff takes and prints: text, Markdown and JSON, sets, folders of images as OLD or NEW, standard input; and what it refuses.
+# What diff takes and prints: text, Markdown, JSON and a picture, sets, folders of images as OLD or NEW, standard input; and what it refuses.
 set -u
 . tests/report.sh
 
@@ -223,6 +223,21 @@ holds 'Markdown: escaped' grep -Fq 'tides?and \<b\>, was Tide' stdout
 compare 1 --markdown pilot-station.yaml kit.yaml
 holds 'Markdown: a set' grep -q '^### changes in bank 1$' stdout
 
+# A picture: tests/reference/diff.sh reads such pictures back. Nothing that a plan says is markup, and what is too much is left out.
+compare 1 --svg tide-board-60.yaml later.yaml
+holds 'picture: XML' xmllint --noout stdout
+holds 'picture: what to burn' grep -q '>rom2: burn it again, 1036 of 131072 bytes differ, the first at 0x788<' stdout
+# By hand: 2 cells of 9 ticks, 7 with 3 more, 1: 93 ticks of 14.318182 MHz, and each cell later 9 more.
+same 'picture: marks' 'burst begins at cell 11, 7.124 us; was at cell 10, 6.495 us: +1 cell
+burst ends at cell 15, 9.638 us; was at cell 14, 9.010 us: +1 cell' "$(sed -n 's/^<title>\(burst .* cell\)<.*/\1/p' stdout | sort -u)"
+compare 0 --svg tide-board-60.yaml note.yaml
+holds 'picture: XML whatever the words' xmllint --noout stdout
+holds 'picture: nothing differs' grep -q 'no line type that both frames have differs at the pins' stdout
+compare 1 --svg pilot-station.yaml kit.yaml
+holds 'picture: a set' grep -q '>bank 1<' stdout
+compare 0 --svg later.yaml images
+holds 'picture: images' xmllint --noout stdout
+
 # JSON, against the text.
 compare 1 --json tide-board-60.yaml later.yaml
 cat >judge.py <<'PYTHON'
@@ -254,6 +269,7 @@ holds 'two folders' grep -q 'wanted at least one plan or set, found two folders'
 compare 2 - -
 compare 2 --json --markdown tide-board-60.yaml later.yaml
 compare 2 --git --json a
+compare 2 --svg --json tide-board-60.yaml later.yaml
 compare 2 tide-board-60.yaml other
 holds 'a folder without images' grep -q 'image-missing' stderr
 compare 2 mooring-board.yaml images

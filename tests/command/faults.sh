@@ -79,7 +79,7 @@ holds "limits: $refusals of 450 allocations refused" test "$refusals" -gt 300
 # The same of diff, which writes nothing: its whole result, or 3 and nothing. Every ninth allocation, another ninth for each form.
 first=0
 sed 's/col }/col + 0, page2: 0 }/; s/page: 1..0/page: 1..0, page2: 2/; s/cells: 2/cells: 3/; s/name: jetty/name: pier/' plan.yaml >later.yaml
-for form in --color=never --markdown --json; do
+for form in --color=never --markdown --json --svg; do
 	"$program" diff "$form" plan.yaml later.yaml >diff.stdout
 	same "diff $form: status" 1 $?
 	LD_PRELOAD=./faults.so FAULTS_COUNT=count "$program" diff "$form" plan.yaml later.yaml >stdout

@@ -21,6 +21,14 @@ while read -r verdict edit rest; do
 done <"$work/verdicts"
 holds 'at least 50 kinds of edits' test "$(cut -d ' ' -f 2 "$work/verdicts" | sort -u | wc -l)" -ge 50
 
+# Pictures of the pairs of two random plans, read back.
+pairs=()
+for old in "$work"/*-"$first"-old.yaml "$work"/*-"$((first + 1))"-old.yaml; do
+	pairs+=("$old" "${old%-old.yaml}-new.yaml")
+done
+# Debian's, for its python3-yaml.
+holds 'pictures are read back' /usr/bin/python3 -B tests/view/read_back_diff.py "$SCANLATCH" "${pairs[@]}"
+
 # The plans of the tree: each is the same as itself, and other than any other, in either order.
 for plan in plans/*.yaml; do
 	holds "$plan: the same as itself" "$SCANLATCH" diff "$plan" "$plan"
