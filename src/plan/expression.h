@@ -27,8 +27,10 @@ enum expression_status {
 };
 
 // The form of an expression as a regular expression; whether its parentheses close is left out.
-#define OPERAND_PATTERN "(0x[0-9a-fA-F]+|[0-9]+|line|cell|col|row)"
-#define EXPRESSION_PATTERN "[ (]*" OPERAND_PATTERN "[ )]*([-+*/%][ (]*" OPERAND_PATTERN "[ )]*)*"
+#define OPERAND_PATTERN(variables) "(0x[0-9a-fA-F]+|[0-9]+|" variables ")"
+#define EXPRESSION_OF(operand) "[ (]*" operand "[ )]*([-+*/%][ (]*" operand "[ )]*)*"
+#define EXPRESSION_PATTERN EXPRESSION_OF(OPERAND_PATTERN("line|cell|col|row"))
+#define LINE_FRAME_EXPRESSION_PATTERN EXPRESSION_OF(OPERAND_PATTERN("cell|col"))
 
 const char *expression_status_words(enum expression_status status);
 

@@ -14,14 +14,14 @@ enum shape_kind {
 	SHAPE_TEXT,      // a single value that is not empty; of a `pattern`, if there is one
 	SHAPE_NOTE,      // a single value, which may be empty
 	SHAPE_WHOLE,     // a whole number from `least` to `most`
-	SHAPE_TRUTH,     // true or false
+	SHAPE_TRUE,      // true: where it is not so, the key is left out
 	SHAPE_CHOICE,    // one of `words`
 	SHAPE_LISTED,    // a name out of a catalogue
 	SHAPE_QUANTITY,  // of one of `dimensions`
 	SHAPE_BIT_COUNT, // `least` to `most` bits
 	SHAPE_LIST,      // `least` to `most` values of the shape `item`
-	SHAPE_MAPPING,   // of `keys`, at least `least` of them
-	SHAPE_NAMED,     // `least` to `most` values of the shape `item`, each under a name of the shape `name`
+	SHAPE_MAPPING,   // of `keys`
+	SHAPE_NAMED,     // `least` to `most` values of the shape `item`, each under a name of the shape `name` (NULL: of any)
 	SHAPE_LIMITS,    // limits under the names of what is measured
 	SHAPE_EITHER,    // one of `shapes`, of which no value has two
 };
@@ -61,9 +61,15 @@ struct key_group {
 	bool one;
 };
 
-// A key that stands only beside another.
+// Where a key stands, another has to stand too.
 struct key_bond {
-	const char *key, *needs; // NULL: there is none
+	const char *key;
+	bool absent;               // it is where `key` does not stand
+	const char *with, *but;    // it is where the value of `key` is this word, or is not this one
+	const char *holding;       // it is where `key` is a list and one of its mappings has this key
+	const char *needs;         // the other key,
+	bool optional;             // which may be left out all the same
+	const struct shape *shape; // and what its value looks like then; NULL: like everywhere
 };
 
 // What a value looks like. Members that the kind does not name are 0.
@@ -85,12 +91,15 @@ struct shape {
 	enum quantity_sign sign;      // SHAPE_QUANTITY
 	const struct shape *item;     // SHAPE_LIST, SHAPE_NAMED
 	bool distinct;                // SHAPE_LIST: no value stands twice
+	const char *once;             // SHAPE_LIST: at most one of its mappings has this key
+	const struct key *each;       // SHAPE_LIST: each word of this key, whose shape is a choice, stands in one of its mappings
 	const struct shape *name;     // SHAPE_NAMED
 	const char *needs_name;       // SHAPE_NAMED: a regular expression that a name must have; NULL: none need
 	const struct key *keys;       // SHAPE_MAPPING
 	size_t key_count;
 	struct key_group group;       // SHAPE_MAPPING
-	struct key_bond bond;         // SHAPE_MAPPING
+	const struct key_bond *bonds; // SHAPE_MAPPING
+	size_t bond_count;
 	const struct shape *const *shapes; // SHAPE_EITHER
 	size_t shape_count;
 	// Of a plan's key: what the value looks like beside a machine of that form; NULL: like this.
@@ -105,6 +114,8 @@ struct shape {
 #define QUANTITY(which, signs) SHAPE(.kind = SHAPE_QUANTITY, .dimensions = (which), .sign = (signs))
 #define LIST_OF(shape, from, to) SHAPE(.kind = SHAPE_LIST, .item = (shape), .least = (from), .most = (to))
 #define SET_OF(shape, from, to) SHAPE(.kind = SHAPE_LIST, .item = (shape), .least = (from), .most = (to), .distinct = true)
+#define BONDS(...) \
+	.bonds = (const struct key_bond[]){__VA_ARGS__}, .bond_count = COUNT_OF(((const struct key_bond[]){__VA_ARGS__}))
 #define EITHER(...) \
 	SHAPE(.kind = SHAPE_EITHER, .shapes = (const struct shape *const[]){__VA_ARGS__}, \
 	      .shape_count = COUNT_OF(((const struct shape *const[]){__VA_ARGS__})))
@@ -121,7 +132,7 @@ struct shape {
 #define ABOVE_ZERO_PATTERN "(0*[1-9][0-9]*(\\.[0-9]+)?|0+\\.0*[1-9][0-9]*)"
 #define WHOLE_PATTERN "(0x[0-9a-fA-F]+|[0-9]+)"
 
-extern const struct shape text_shape, note_shape, truth_shape, version_shape, time_shape;
+extern const struct shape text_shape, note_shape, true_shape, version_shape, time_shape;
 #define IDENTIFIER_PATTERN "[a-z][a-z0-9_]*"
 extern const struct shape identifier_shape;     // the name of a signal or field
 extern const struct shape printable_name_shape; // of a region, a line type or a part
@@ -132,6 +143,7 @@ extern const struct shape address_wire_shape, data_wire_shape;
 // The values of a plan's keys.
 extern const struct shape standard_shape, grade_shape, clock_shape, signals_shape, lines_shape, frame_shape, machine_shape, parts_shape,
 	chips_shape, timing_shape, sweeps_shape;
+extern const struct shape lineless_machine_shape; // where a board has no lines: nothing else tells how many kinds there are
 // What a line-frame machine's stage is, and a line or a frame stage's name.
 extern const struct shape stage_shape, stage_word_shape;
 

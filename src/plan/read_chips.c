@@ -78,8 +78,8 @@ static const struct key loop_long_keys[CHIP_KEYS] = {
 };
 
 #define CHIPS_ABOUT "Chips one by one, with what is wired to each of their pins"
-#define CHIPS_OF(shape) \
-	SHAPE(.kind = SHAPE_LIST, .about = CHIPS_ABOUT, .item = &(shape), .least = 1, .most = LIMIT_CHIPS)
+#define CHIPS_OF(chip, key) \
+	SHAPE(.kind = SHAPE_LIST, .about = CHIPS_ABOUT, .item = &(chip), .least = 1, .most = LIMIT_CHIPS, .each = (key))
 
 static const struct shape chip_shape = {.kind = SHAPE_MAPPING, .title = "chip", .keys = long_keys, .key_count = CHIP_KEYS};
 static const struct shape loop_chip_shape = {
@@ -90,14 +90,14 @@ static const struct shape staged_chip_shape = {
 	.kind = SHAPE_MAPPING, .title = "chip of a line-frame machine", .keys = long_keys, .key_count = CHIP_KEYS,
 	.group = {.first = CHIP_STAGE, .count = 1, .one = true},
 };
-static const struct shape *const chips_shapes[] = {&part_and_speed_shape, &two_stages_shape, CHIPS_OF(chip_shape)};
+static const struct shape *const chips_shapes[] = {&part_and_speed_shape, &two_stages_shape, CHIPS_OF(chip_shape, NULL)};
 
 const struct shape chips_shape = {
 	.kind = SHAPE_EITHER,
 	.shapes = chips_shapes,
 	.shape_count = COUNT_OF(chips_shapes),
-	.in_loop = EITHER(&part_and_speed_shape, CHIPS_OF(loop_chip_shape)),
-	.in_line_frame = EITHER(&two_stages_shape, CHIPS_OF(staged_chip_shape)),
+	.in_loop = EITHER(&part_and_speed_shape, CHIPS_OF(loop_chip_shape, NULL)),
+	.in_line_frame = EITHER(&two_stages_shape, CHIPS_OF(staged_chip_shape, &long_keys[CHIP_STAGE])),
 };
 
 static const struct stray_key loop_long_strays[] = {

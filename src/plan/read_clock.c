@@ -26,7 +26,10 @@ static const struct key clock_keys[CLOCK_KEYS] = {
 	                 "free, what it is when left out"},
 };
 
-const struct shape clock_shape = {.kind = SHAPE_MAPPING, .title = "clock", .keys = clock_keys, .key_count = CLOCK_KEYS};
+const struct shape clock_shape = {
+	.kind = SHAPE_MAPPING, .title = "clock", .keys = clock_keys, .key_count = CLOCK_KEYS,
+	BONDS({.key = "phase", .but = "free", .needs = "subcarrier"}),
+};
 
 static bool read_frequency(struct reader *reader, const struct node *node, const char *what, struct fraction *hertz)
 {

@@ -8,58 +8,64 @@
 enum { REGION_NAME, REGION_CELLS, REGION_TIME, REGION_FILL, REGION_ASSERT, REGION_STRETCH, REGION_HOLD, REGION_KEYS };
 
 const struct shape expression_shape = {.kind = SHAPE_TEXT, .pattern = EXPRESSION_PATTERN, .also = ALSO_WHOLE};
+static const struct shape line_frame_expression_shape = {
+	.kind = SHAPE_TEXT, .pattern = LINE_FRAME_EXPRESSION_PATTERN, .also = ALSO_WHOLE,
+};
 
 static const char *const auto_word[] = {"auto"};
 
-static const struct shape holds_shape = {
-	.kind = SHAPE_NAMED, .name = &identifier_shape, .item = &expression_shape, .most = INT64_MAX,
-};
+#define REGION_KEYS_WITH(expression) \
+	[REGION_NAME] = {"region", KEY_REQUIRED, &printable_name_shape, "Its name"}, \
+	[REGION_CELLS] = {"cells", KEY_OPTIONAL, WHOLE(1, LIMIT_CELLS), "Its length in cells"}, \
+	[REGION_TIME] = {"time", KEY_OPTIONAL, QUANTITY(IN_SECONDS | IN_TICKS | IN_DOTS | IN_CELLS, QUANTITY_POSITIVE), \
+	                 "Its length as a time, or in ticks, dots or cells; its edges go to the nearest boundary of normal cells"}, \
+	[REGION_FILL] = {"fill", KEY_OPTIONAL, &true_shape, "true: its length is what the others leave of the line's cells"}, \
+	[REGION_ASSERT] = {"assert", KEY_OPTIONAL, SET_OF(&identifier_shape, 0, INT64_MAX), \
+	                   "The signals that are asserted in all its cells; none if left out"}, \
+	[REGION_STRETCH] = {"stretch", KEY_OPTIONAL, EITHER(WHOLE(0, LIMIT_CELLS), CHOICE(auto_word)), \
+	                    "How many of its first cells are stretched; auto: the program stretches cells here so that the line " \
+	                    "meets the clock's phase"}, \
+	[REGION_HOLD] = {"hold", KEY_OPTIONAL, \
+	                 SHAPE(.kind = SHAPE_NAMED, .name = &identifier_shape, .item = &(expression), .most = INT64_MAX), \
+	                 "Fields of the state and their values in each cell, as expressions with line, row (in its block), cell and " \
+	                 "col (in the region); of a line-frame machine with cell and col"}
 
-static const struct key region_keys[REGION_KEYS] = {
-	[REGION_NAME] = {"region", KEY_REQUIRED, &printable_name_shape, "Its name"},
-	[REGION_CELLS] = {"cells", KEY_OPTIONAL, WHOLE(1, LIMIT_CELLS), "Its length in cells"},
-	[REGION_TIME] = {"time", KEY_OPTIONAL, QUANTITY(IN_SECONDS | IN_TICKS | IN_DOTS | IN_CELLS, QUANTITY_POSITIVE),
-	                 "Its length as a time, or in ticks, dots or cells; its edges go to the nearest boundary of normal cells"},
-	[REGION_FILL] = {"fill", KEY_OPTIONAL, &truth_shape, "true: its length is what the others leave of the line's cells"},
-	[REGION_ASSERT] = {"assert", KEY_OPTIONAL, SET_OF(&identifier_shape, 0, INT64_MAX),
-	                   "The signals that are asserted in all its cells; none if left out"},
-	[REGION_STRETCH] = {"stretch", KEY_OPTIONAL, EITHER(WHOLE(0, LIMIT_CELLS), CHOICE(auto_word)),
-	                    "How many of its first cells are stretched; auto: the program stretches cells here so that the line "
-	                    "meets the clock's phase"},
-	[REGION_HOLD] = {"hold", KEY_OPTIONAL, &holds_shape,
-	                 "Fields of the state and their values in each cell, as expressions with line, row (in its block), cell and "
-	                 "col (in the region); of a line-frame machine with cell and col"},
-};
+static const struct key region_keys[REGION_KEYS] = {REGION_KEYS_WITH(expression_shape)};
+static const struct key line_frame_region_keys[REGION_KEYS] = {REGION_KEYS_WITH(line_frame_expression_shape)};
 
 #define LENGTHS .first = REGION_CELLS, .count = REGION_FILL - REGION_CELLS + 1
-
-static const struct shape region_shape = {
-	.kind = SHAPE_MAPPING, .title = "region", .about = "A run of cells in which the same signals are asserted",
-	.keys = region_keys, .key_count = REGION_KEYS, .group = {LENGTHS, .one = true},
-};
-static const struct shape change_shape = {
-	.kind = SHAPE_MAPPING, .title = "change", .about = "A region of the line type that this one is like, with the keys that differ",
-	.keys = region_keys, .key_count = REGION_KEYS, .group = {LENGTHS, .one = false},
-};
+#define REGION_OF(table, of) \
+	SHAPE(.kind = SHAPE_MAPPING, .title = "region" of, .about = "A run of cells in which the same signals are asserted", \
+	      .keys = (table), .key_count = REGION_KEYS, .group = {LENGTHS, .one = true})
+#define CHANGE_OF(table, of) \
+	SHAPE(.kind = SHAPE_MAPPING, .title = "change" of, .about = "A region of the line type that this one is like, with the keys that differ", \
+	      .keys = (table), .key_count = REGION_KEYS, .group = {LENGTHS, .one = false})
 
 enum { LINE_CELLS, LINE_REGIONS, LINE_LIKE, LINE_CHANGE, LINE_KEYS };
 
-static const struct key line_keys[LINE_KEYS] = {
-	[LINE_CELLS] = {"cells", KEY_OPTIONAL, WHOLE(1, LIMIT_CELLS), "How many cells the line has; the sum of its regions if left out"},
-	[LINE_REGIONS] = {"regions", KEY_OPTIONAL, LIST_OF(&region_shape, 1, UINT16_MAX), "The regions of the line, end to end"},
-	[LINE_LIKE] = {"like", KEY_OPTIONAL, &printable_name_shape, "Another line type, whose regions this one has with changes"},
-	[LINE_CHANGE] = {"change", KEY_OPTIONAL, LIST_OF(&change_shape, 0, INT64_MAX), "The regions that differ, by name"},
-};
+#define LINE_KEYS_WITH(regions, of) \
+	[LINE_CELLS] = {"cells", KEY_OPTIONAL, WHOLE(1, LIMIT_CELLS), "How many cells the line has; the sum of its regions if left out"}, \
+	[LINE_REGIONS] = {"regions", KEY_OPTIONAL, \
+	                  SHAPE(.kind = SHAPE_LIST, .item = REGION_OF(regions, of), .least = 1, .most = UINT16_MAX, .once = "fill"), \
+	                  "The regions of the line, end to end"}, \
+	[LINE_LIKE] = {"like", KEY_OPTIONAL, &printable_name_shape, "Another line type, whose regions this one has with changes"}, \
+	[LINE_CHANGE] = {"change", KEY_OPTIONAL, \
+	                 SHAPE(.kind = SHAPE_LIST, .item = CHANGE_OF(regions, of), .most = INT64_MAX, .once = "fill"), \
+	                 "The regions that differ, by name"}
+
+#define OF_LINE_FRAME " of a line-frame machine"
+
+static const struct key line_keys[LINE_KEYS] = {LINE_KEYS_WITH(region_keys, "")};
+static const struct key line_frame_line_keys[LINE_KEYS] = {LINE_KEYS_WITH(line_frame_region_keys, OF_LINE_FRAME)};
 
 // Regions or like.
-static const struct shape line_shape = {
-	.kind = SHAPE_MAPPING, .title = "line type", .keys = line_keys, .key_count = LINE_KEYS,
-	.group = {.first = LINE_REGIONS, .count = 2, .one = true}, .bond = {.key = "change", .needs = "like"},
-};
+#define LINES_OF(table, of) \
+	.kind = SHAPE_NAMED, .name = &printable_name_shape, .least = 1, .most = INT64_MAX, \
+	.item = SHAPE(.kind = SHAPE_MAPPING, .title = "line type" of, .keys = (table), .key_count = LINE_KEYS, \
+	              .group = {.first = LINE_REGIONS, .count = 2, .one = true}, \
+	              BONDS({.key = "change", .needs = "like"}, {.key = "regions", .holding = "fill", .needs = "cells"}))
 
-const struct shape lines_shape = {
-	.kind = SHAPE_NAMED, .name = &printable_name_shape, .item = &line_shape, .least = 1, .most = INT64_MAX,
-};
+const struct shape lines_shape = {LINES_OF(line_keys, ""), .in_line_frame = SHAPE(LINES_OF(line_frame_line_keys, OF_LINE_FRAME))};
 
 // A line type while `like` is being resolved: its values, and how far it is.
 struct pending_line {

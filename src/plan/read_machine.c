@@ -56,29 +56,39 @@ static const struct stray_key loop_strays[] = {
 	{"kind", TWO_STAGES_ONLY},
 };
 
-static const struct key line_frame_keys[MACHINE_KEYS] = {
-	[MACHINE_FORM] = FORM_KEY(FORM_LINE_FRAME),
-	[MACHINE_STATE] = ELSEWHERE("state"),
-	[MACHINE_FIELDS] = FIELDS_KEY,
-	[MACHINE_START] = START_KEY,
-	[MACHINE_OUTPUTS] = ELSEWHERE("outputs"),
-	[MACHINE_ADVANCE] = ELSEWHERE("advance"),
-	[MACHINE_CLEAR] = ELSEWHERE("clear"),
-	[MACHINE_LINE] = {"line", KEY_REQUIRED, &stage_shape, "The line stage: goes through the cells of a line"},
-	[MACHINE_FRAME] = {"frame", KEY_REQUIRED, &stage_shape, "The frame stage: goes from line to line"},
-	[MACHINE_KIND] = {"kind", KEY_OPTIONAL, BIT_COUNT(0, LIMIT_KIND_BITS),
-	                  "The bits that tell line types apart; when left out, as many as the line types need"},
-};
+#define LINE_FRAME_KEYS(need) \
+	[MACHINE_FORM] = FORM_KEY(FORM_LINE_FRAME), \
+	[MACHINE_STATE] = ELSEWHERE("state"), \
+	[MACHINE_FIELDS] = FIELDS_KEY, \
+	[MACHINE_START] = START_KEY, \
+	[MACHINE_OUTPUTS] = ELSEWHERE("outputs"), \
+	[MACHINE_ADVANCE] = ELSEWHERE("advance"), \
+	[MACHINE_CLEAR] = ELSEWHERE("clear"), \
+	[MACHINE_LINE] = {"line", KEY_REQUIRED, &stage_shape, "The line stage: goes through the cells of a line"}, \
+	[MACHINE_FRAME] = {"frame", KEY_REQUIRED, &stage_shape, "The frame stage: goes from line to line"}, \
+	[MACHINE_KIND] = {"kind", need, BIT_COUNT(0, LIMIT_KIND_BITS), \
+	                  "The bits that tell line types apart; when left out, as many as the line types need"}
+
+static const struct key line_frame_keys[MACHINE_KEYS] = {LINE_FRAME_KEYS(KEY_OPTIONAL)};
+static const struct key lineless_line_frame_keys[MACHINE_KEYS] = {LINE_FRAME_KEYS(KEY_REQUIRED)};
 
 static const struct shape loop_machine_shape = {
-	.kind = SHAPE_MAPPING, .title = "loop machine", .keys = loop_keys, .key_count = MACHINE_KEYS,
+	.kind = SHAPE_MAPPING, .title = "loop machine", .keys = loop_keys, .key_count = MACHINE_KEYS, BONDS(CLEAR_BOND),
 };
 static const struct shape line_frame_machine_shape = {
 	.kind = SHAPE_MAPPING, .title = "line-frame machine", .keys = line_frame_keys, .key_count = MACHINE_KEYS,
 };
+// settle_board looks for the kind.
+static const struct shape lineless_line_frame_shape = {
+	.kind = SHAPE_MAPPING, .title = "line-frame machine of a board without lines", .keys = lineless_line_frame_keys, .key_count = MACHINE_KEYS,
+};
 static const struct shape *const machine_shapes[] = {&loop_machine_shape, &line_frame_machine_shape};
+static const struct shape *const lineless_machine_shapes[] = {&loop_machine_shape, &lineless_line_frame_shape};
 
 const struct shape machine_shape = {.kind = SHAPE_EITHER, .shapes = machine_shapes, .shape_count = COUNT_OF(machine_shapes)};
+const struct shape lineless_machine_shape = {
+	.kind = SHAPE_EITHER, .shapes = lineless_machine_shapes, .shape_count = COUNT_OF(lineless_machine_shapes),
+};
 
 #define EACH_STAGE_HAS_ITS_OWN(key) "each stage has its own: write line: { " key ": ... } and frame: { " key ": ... }"
 

@@ -65,6 +65,7 @@ const struct shape plan_shape = {
 const struct shape board_shape = {
 	.kind = SHAPE_MAPPING, .about = "What a board looks like: a plan without lines and frame",
 	.keys = board_keys, .key_count = PLAN_KEYS,
+	BONDS({.key = "lines", .absent = true, .needs = "machine", .shape = &lineless_machine_shape}),
 };
 
 #define OF_A_SET "that is of a set, which begins with scanlatch-set: 1"
@@ -153,7 +154,7 @@ static void hint_board(struct reader *reader, const struct node *root, const str
 static void settle_board(struct reader *reader, const struct node *lines)
 {
 	struct plan *plan = reader->plan;
-	const bool is_plan = lines != NULL && lines->kind == NODE_MAPPING;
+	const bool is_plan = lines != NULL && lines->kind == NODE_MAPPING && lines->count > 0;
 	if (reader->form_known && plan->machine.form == FORM_LINE_FRAME && reader->kind == NULL && !is_plan) {
 		diagnose(reader->diagnostics, RULE_BOARD_KIND, plan->machine.place,
 		         "a board of two stages has to say how many bits its kind has, found no kind in machine");

@@ -55,6 +55,7 @@ static const struct key loop_signal_keys[SIGNAL_KEYS] = {
 
 static const struct shape signal_shape = {
 	.kind = SHAPE_MAPPING, .title = "signal", .keys = signal_keys, .key_count = SIGNAL_KEYS,
+	BONDS({.key = "stage", .with = "frame", .needs = "from", .optional = true, .shape = CHOICE(data_word)}),
 };
 static const struct shape loop_signal_shape = {
 	.kind = SHAPE_MAPPING, .title = "signal of a loop machine", .keys = loop_signal_keys, .key_count = SIGNAL_KEYS,

@@ -10,6 +10,7 @@ static const char *const stage_words[] = {[STAGE_LINE] = "line", [STAGE_FRAME] =
 const struct shape state_bits_shape = {.kind = SHAPE_BIT_COUNT, .least = 1, .most = LIMIT_STATE_BITS};
 const struct shape outputs_shape = {.kind = SHAPE_CHOICE, .words = outputs_words, .word_count = COUNT_OF(outputs_words)};
 const struct shape advance_shape = {.kind = SHAPE_CHOICE, .words = advance_words, .word_count = COUNT_OF(advance_words)};
+const struct shape count_shape = {.kind = SHAPE_CHOICE, .words = &advance_words[ADVANCE_COUNT], .word_count = 1};
 const struct shape clear_shape = {.kind = SHAPE_CHOICE, .words = clear_words, .word_count = COUNT_OF(clear_words)};
 const struct shape stage_word_shape = {.kind = SHAPE_CHOICE, .words = stage_words, .word_count = COUNT_OF(stage_words)};
 
@@ -23,7 +24,9 @@ static const struct key stage_keys[STAGED_KEYS] = {
 	[STAGED_HOLD] = {"hold", KEY_ELSEWHERE, NULL, NULL},
 };
 
-const struct shape stage_shape = {.kind = SHAPE_MAPPING, .title = "stage", .keys = stage_keys, .key_count = STAGED_KEYS};
+const struct shape stage_shape = {
+	.kind = SHAPE_MAPPING, .title = "stage", .keys = stage_keys, .key_count = STAGED_KEYS, BONDS(CLEAR_BOND),
+};
 
 #define IN_REGIONS "hold stands in the regions of lines, and holds fields of the line stage's state"
 

@@ -14,7 +14,8 @@ static const struct key own_keys[OWN_KEYS] = {
 };
 
 static const struct shape own_shape = {
-	.kind = SHAPE_MAPPING, .title = "own standard", .least = 1, .keys = own_keys, .key_count = OWN_KEYS,
+	.kind = SHAPE_MAPPING, .title = "own standard", .keys = own_keys, .key_count = OWN_KEYS,
+	BONDS({.key = "base", .absent = true, .needs = "limits", .shape = SHAPE(.kind = SHAPE_NAMED, .least = 1, .most = INT64_MAX)}),
 };
 static const struct shape *const standard_shapes[] = {LISTED(LISTED_STANDARDS), &own_shape};
 

@@ -10,7 +10,7 @@
 
 const struct shape text_shape = {.kind = SHAPE_TEXT, .also = ALSO_NUMBER | ALSO_TRUTH};
 const struct shape note_shape = {.kind = SHAPE_NOTE};
-const struct shape truth_shape = {.kind = SHAPE_TRUTH};
+const struct shape true_shape = {.kind = SHAPE_TRUE};
 const struct shape time_shape = {.kind = SHAPE_QUANTITY, .dimensions = IN_SECONDS, .sign = QUANTITY_POSITIVE};
 const struct shape bits_shape = {.kind = SHAPE_TEXT, .pattern = BIT_RANGE_PATTERN, .also = ALSO_WHOLE};
 
@@ -319,7 +319,7 @@ bool key_whole(struct reader *reader, const struct key *key, const struct node *
 
 bool key_truth(struct reader *reader, const struct key *key, const struct node *node, bool *result)
 {
-	shape_of(key, SHAPE_TRUTH);
+	shape_of(key, SHAPE_TRUE);
 	return node != NULL && read_truth(reader, node, key->name, result);
 }
 

@@ -102,15 +102,16 @@ static void find_start(struct lifting *lifting)
 // The type at a kind's place: the one of that kind, or one that no line is of.
 static bool place_type(struct lift *lift, struct lift_type *place, const struct lift_type *type, uint32_t kind)
 {
+	const uint32_t cells = 2;
 	struct lift_region *whole = type == NULL ? arena_array(lift->arena, 1, sizeof *whole) : NULL;
 	if (type != NULL) {
 		*place = *type;
 		return true;
 	}
-	*place = (struct lift_type){.name = arena_format(lift->arena, "unused %u", (unsigned)kind), .cells = 2, .regions = whole,
-	                            .region_count = 1};
+	*place = (struct lift_type){.name = arena_format(lift->arena, "unused %u", (unsigned)kind), .cells = cells,
+	                            .ticks = cells * lift->plan->clock.cell_ticks, .regions = whole, .region_count = 1};
 	if (whole != NULL)
-		*whole = (struct lift_region){.name = "unused", .cells = 2};
+		*whole = (struct lift_region){.name = "unused", .cells = cells};
 	return whole != NULL && place->name != NULL;
 }
 

@@ -1,4 +1,4 @@
-#include <inttypes.h>
+#include <stdint.h>
 
 #include "base/arena.h"
 #include "layout/placement.h"
@@ -11,11 +11,6 @@
 #include "view/frame.h"
 #include "view/placement.h"
 #include "view/proofs.h"
-
-static json_t *ticks_json(int64_t ticks)
-{
-	return json_sprintf("%" PRId64, ticks);
-}
 
 // Sets NAME_hz, exact, and NAME_mhz, rounded.
 static void put_frequency(json_t **object, const char *exact_key, const char *rounded_key, struct fraction hertz)
@@ -50,9 +45,9 @@ static json_t *region_json(const struct plan *plan, const struct region *region,
 	json_put(&object, "first_cell", json_integer(laid->first_cell));
 	json_put(&object, "cells", json_integer(laid->cells));
 	json_put(&object, "stretched_cells", json_integer(laid->stretched));
-	json_put(&object, "start_ticks", ticks_json(laid->start_ticks));
+	json_put(&object, "start_ticks", json_ticks(laid->start_ticks));
 	put_microseconds(&object, "start_us", &plan->clock, fraction_whole(laid->start_ticks));
-	json_put(&object, "ticks", ticks_json(laid->ticks));
+	json_put(&object, "ticks", json_ticks(laid->ticks));
 	put_microseconds(&object, "us", &plan->clock, fraction_whole(laid->ticks));
 	struct fraction rounding;
 	if (region->length != LENGTH_FILL && fraction_subtract(fraction_whole(laid->ticks), laid->asked_ticks, &rounding)) {
@@ -78,7 +73,7 @@ static json_t *line_json(const struct timeline *timeline, size_t type, uint32_t 
 	}
 	json_put(&object, "name", json_string(line->name));
 	json_put(&object, "cells", json_integer(laid->cells));
-	json_put(&object, "ticks", ticks_json(laid->ticks));
+	json_put(&object, "ticks", json_ticks(laid->ticks));
 	put_microseconds(&object, "us", &timeline->plan->clock, fraction_whole(laid->ticks));
 	if (cycles_of_ticks(&timeline->plan->clock, laid->ticks, &cycles))
 		json_put_fraction(&object, "cycles", cycles);
@@ -105,9 +100,9 @@ static json_t *clock_json(const struct clock *clock)
 {
 	json_t *object = json_object();
 	put_frequency(&object, "master_hz", "master_mhz", clock->master_hz);
-	json_put(&object, "dot_ticks", ticks_json(clock->dot_ticks));
-	json_put(&object, "cell_ticks", ticks_json(clock->cell_ticks));
-	json_put(&object, "stretch_ticks", ticks_json(clock->stretch_ticks));
+	json_put(&object, "dot_ticks", json_ticks(clock->dot_ticks));
+	json_put(&object, "cell_ticks", json_ticks(clock->cell_ticks));
+	json_put(&object, "stretch_ticks", json_ticks(clock->stretch_ticks));
 	if (clock->has_accuracy)
 		json_put(&object, "accuracy_ppm", json_fraction(clock->accuracy_ppm));
 	if (clock->has_subcarrier)

@@ -1,4 +1,3 @@
-#include <inttypes.h>
 #include <string.h>
 
 #include "base/text.h"
@@ -23,7 +22,7 @@ static void put_shift(json_t **object, const struct comparison *comparison, cons
 {
 	struct fraction seconds;
 	json_put(object, "cells", json_integer(change->cells));
-	json_put(object, "ticks", json_sprintf("%" PRId64, change->ticks));
+	json_put(object, "ticks", json_ticks(change->ticks));
 	if (seconds_of_ticks(&comparison->now->plan->clock, change->ticks, &seconds))
 		json_put_time(object, "shift", seconds, UNIT_MICROSECONDS);
 }

@@ -191,11 +191,6 @@ void view_divider(struct text *out, const struct clock *clock)
 	end_tap(out, &view, "subcarrier tap", &divider->subcarrier, &subcarrier);
 }
 
-static json_t *ticks_json(int64_t ticks)
-{
-	return json_sprintf("%" PRId64, ticks);
-}
-
 static json_t *tap_json(const struct divider *divider, const struct divider_tap *tap, bool phases)
 {
 	static const char *const names[] = {
@@ -236,8 +231,8 @@ static json_t *sequence_json(const struct divider_view *view)
 	for (size_t index = 0; index < view->span_count; index++) {
 		const struct divider_span *span = &view->spans[index];
 		json_t *object = json_object();
-		json_put(&object, "first", ticks_json(span->first));
-		json_put(&object, "last", ticks_json(span->last));
+		json_put(&object, "first", json_ticks(span->first));
+		json_put(&object, "last", json_ticks(span->last));
 		json_put(&object, "stretched", json_boolean(span->stretched));
 		put_levels_json(&object, "dot", &view->divider.dot, span);
 		put_levels_json(&object, "subcarrier", &view->divider.subcarrier, span);
@@ -251,10 +246,10 @@ json_t *view_divider_json(const struct clock *clock)
 	const struct divider_view view = view_of_clock(clock);
 	const struct divider *divider = &view.divider;
 	json_t *object = json_object();
-	json_put(&object, "cell_counts", ticks_json(divider->cell_ticks));
+	json_put(&object, "cell_counts", json_ticks(divider->cell_ticks));
 	if (divider->stretch_ticks > 0) {
-		json_put(&object, "stretched_cell_counts", ticks_json(divider->cell_ticks + divider->stretch_ticks));
-		json_put(&object, "lengthens", ticks_json(divider->cell_ticks - 1));
+		json_put(&object, "stretched_cell_counts", json_ticks(divider->cell_ticks + divider->stretch_ticks));
+		json_put(&object, "lengthens", json_ticks(divider->cell_ticks - 1));
 	}
 	json_put(&object, "bits", json_integer(divider->bits));
 	json_put(&object, "dot", tap_json(divider, &divider->dot, false));

@@ -188,6 +188,18 @@ json_t *json_time(struct fraction seconds, enum time_unit unit)
 	return json_scaled(seconds, units[unit].exponent);
 }
 
+json_t *json_ticks(int64_t ticks)
+{
+	return json_sprintf("%" PRId64, ticks);
+}
+
+json_t *json_of_text(struct text *text)
+{
+	json_t *string = text->failed ? NULL : json_string(text_string(text));
+	text_release(text);
+	return string;
+}
+
 // Both functions of jansson take the value's reference even if they fail, and fail for a NULL value.
 void json_put(json_t **object, const char *key, json_t *value)
 {

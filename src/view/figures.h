@@ -51,6 +51,8 @@ void text_put_wrapped(struct text *text, const char *words, size_t used, size_t 
 json_t *json_fraction(struct fraction value);                    // "455/2", exact
 json_t *json_rounded(struct fraction value);                     // 227.5: a real, rounded to 6 decimals
 json_t *json_time(struct fraction seconds, enum time_unit unit); // in that unit: a real, rounded to 6 decimals
+json_t *json_ticks(int64_t ticks);                               // "912": a string, as all of them have to be exact
+json_t *json_of_text(struct text *text);                         // a string; the text is released
 
 // Sets a key of an object, or appends to an array. The value's reference is taken. Where memory is out (a NULL value says
 // so too), *object is given up and becomes NULL; a NULL *object drops the value: so a writer checks once, at the end.

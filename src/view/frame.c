@@ -9,7 +9,7 @@ json_t *view_frame_json(const struct timeline *timeline)
 	struct fraction rate;
 	json_put(&frame, "lines", json_integer(timeline->line_count));
 	json_put(&frame, "cells", json_integer(timeline->cell_count));
-	json_put(&frame, "ticks", json_sprintf("%lld", (long long)timeline->tick_count));
+	json_put(&frame, "ticks", json_ticks(timeline->tick_count));
 	if (!fraction_divide(timeline->plan->clock.master_hz, fraction_whole(timeline->tick_count), &rate)) {
 		json_decref(rate_object);
 		json_put(&frame, "rate", json_null());

@@ -2,23 +2,11 @@
 #include "view/figures.h"
 #include "view/lift.h"
 
-static json_t *text_json(struct text *text)
-{
-	json_t *string = text->failed ? NULL : json_string(text_string(text));
-	text_release(text);
-	return string;
-}
-
 static json_t *hex_json(uint32_t value, unsigned bits)
 {
 	struct text text = {0};
 	text_put_hex(&text, value, bits);
-	return text_json(&text);
-}
-
-static json_t *ticks_json(int64_t ticks)
-{
-	return json_sprintf("%lld", (long long)ticks);
+	return json_of_text(&text);
 }
 
 static json_t *images_json(const struct lift *lift, const struct lift_sources *sources)
@@ -39,7 +27,7 @@ static json_t *loop_json(const struct lift *lift)
 	json_t *loop = json_object();
 	json_put(&loop, "state", hex_json(lift->states[0], lift->state_bits));
 	json_put(&loop, "cells", json_integer(lift->cell_count));
-	json_put(&loop, "ticks", ticks_json(lift->tick_count));
+	json_put(&loop, "ticks", json_ticks(lift->tick_count));
 	json_put(&loop, "lines", json_integer(lift->line_count));
 	json_put(&loop, "power_up_state", hex_json(lift->power_up_state, lift->state_bits));
 	json_put(&loop, "lead_in_cells", json_integer(lift->lead_in_cells));
@@ -85,7 +73,7 @@ static json_t *lines_json(const struct lift *lift)
 			json_append(&regions, region_json(lift, &type->regions[region]));
 		json_put(&line, "name", json_string(type->name));
 		json_put(&line, "cells", json_integer(type->cells));
-		json_put(&line, "ticks", ticks_json(type->ticks));
+		json_put(&line, "ticks", json_ticks(type->ticks));
 		json_put(&line, "used", json_integer(type->lines));
 		json_put(&line, "regions", regions);
 		json_append(&lines, line);

@@ -6,21 +6,17 @@
 #include "base/text.h"
 #include "view/columns.h"
 #include "view/figures.h"
+#include "view/proofs_shared.h"
 #include "view/standards.h"
-
-static const struct plan *plan_of_proofs(const struct proofs *proofs)
-{
-	return proofs->timeline->plan;
-}
 
 static enum limit_grade other_grade(const struct proofs *proofs)
 {
-	return plan_of_proofs(proofs)->grade == GRADE_STUDIO ? GRADE_MONITOR : GRADE_STUDIO;
+	return plan_of(proofs)->grade == GRADE_STUDIO ? GRADE_MONITOR : GRADE_STUDIO;
 }
 
 static const struct limit *limit_at(const struct proofs *proofs, enum limit_item item, enum limit_grade grade)
 {
-	return standard_limit(plan_of_proofs(proofs)->standard, item, grade);
+	return standard_limit(plan_of(proofs)->standard, item, grade);
 }
 
 // Values at 3 decimals, as times are everywhere; frequencies below 100 at 6, since the limits of field rates are as narrow as that.
@@ -136,7 +132,7 @@ static void put_table_cell(struct text *out, const void *context, size_t row, si
 	const struct proofs *proofs = view->proofs;
 	const enum limit_item item = view->items[row];
 	const struct limit_verdict *verdicts = proofs->limits.rows[item].grades;
-	const struct limit_verdict *verdict = &verdicts[plan_of_proofs(proofs)->grade];
+	const struct limit_verdict *verdict = &verdicts[plan_of(proofs)->grade];
 	switch (column) {
 	case COLUMN_ITEM: text_put(out, limit_item_facts(item)->name); break;
 	case COLUMN_UNIT: text_put(out, limit_item_facts(item)->unit); break;
@@ -149,13 +145,13 @@ static void put_table_cell(struct text *out, const void *context, size_t row, si
 		break;
 	case COLUMN_VERDICT: put_verdict(out, verdict); break;
 	case COLUMN_OTHER: put_verdict(out, &verdicts[other_grade(proofs)]); break;
-	default: put_limit_column(out, item, limit_at(proofs, item, plan_of_proofs(proofs)->grade), column); break;
+	default: put_limit_column(out, item, limit_at(proofs, item, plan_of(proofs)->grade), column); break;
 	}
 }
 
 static void put_standard_name(struct text *out, const struct proofs *proofs)
 {
-	const struct standard *standard = plan_of_proofs(proofs)->standard;
+	const struct standard *standard = plan_of(proofs)->standard;
 	text_put(out, standard->name);
 	if (standard->own_limits > 0 && strcmp(standard->name, "own") != 0) {
 		text_put(out, " with ");
@@ -213,7 +209,7 @@ bool limits_view_make(const struct proofs *proofs, struct limits_view *view)
 {
 	if (proofs->limits.measurement == NULL || proofs->limits.measurement->flaw != NULL)
 		return false;
-	const enum limit_grade grade = plan_of_proofs(proofs)->grade;
+	const enum limit_grade grade = plan_of(proofs)->grade;
 	const struct column columns[LIMITS_COLUMNS] = {
 		[COLUMN_ITEM] = {"item", false},     [COLUMN_UNIT] = {"unit", false}, [COLUMN_MEASURED] = {"measured", true},
 		[COLUMN_NOMINAL] = {"nominal", true}, [COLUMN_LOW] = {"low", true},    [COLUMN_HIGH] = {"high", true},
@@ -237,8 +233,8 @@ void put_limits_heading(struct text *out, const struct proofs *proofs)
 {
 	text_put(out, "limits of ");
 	put_standard_name(out, proofs);
-	text_printf(out, ", grade %s%s", limit_grade_name(plan_of_proofs(proofs)->grade),
-	            plan_of_proofs(proofs)->clock.has_accuracy ? "; margins with the clock's accuracy" : "");
+	text_printf(out, ", grade %s%s", limit_grade_name(plan_of(proofs)->grade),
+	            plan_of(proofs)->clock.has_accuracy ? "; margins with the clock's accuracy" : "");
 }
 
 static void put_wrapped_note(struct text *out, struct text *words)
@@ -253,7 +249,7 @@ static void put_wrapped_note(struct text *out, struct text *words)
 static bool find_offset(const struct proofs *proofs, enum limit_item item, struct fraction *offset)
 {
 	const struct measured *measured = &proofs->limits.measurement->items[item];
-	const struct limit *limit = limit_at(proofs, item, plan_of_proofs(proofs)->grade);
+	const struct limit *limit = limit_at(proofs, item, plan_of(proofs)->grade);
 	struct fraction low, high, both;
 	if (limit == NULL || !limit->has_nominal || !measured->known || !fraction_subtract(measured->values.low, limit->nominal, &low) ||
 	    !fraction_subtract(measured->values.high, limit->nominal, &high) || !fraction_add(low, high, &both))
@@ -327,8 +323,8 @@ static void put_grade_counts(struct text *out, const struct limits_result *limit
 void put_limits_figures(struct text *out, const struct proofs *proofs)
 {
 	const struct limits_result *limits = &proofs->limits;
-	const enum limit_grade grade = plan_of_proofs(proofs)->grade;
-	if (plan_of_proofs(proofs)->standard == NULL) {
+	const enum limit_grade grade = plan_of(proofs)->grade;
+	if (plan_of(proofs)->standard == NULL) {
 		text_put(out, "the plan names no standard");
 		return;
 	}
@@ -343,9 +339,9 @@ void put_limits_figures(struct text *out, const struct proofs *proofs)
 
 bool limit_is_missed(const struct proofs *proofs, enum limit_item item)
 {
-	if (plan_of_proofs(proofs)->standard == NULL)
+	if (plan_of(proofs)->standard == NULL)
 		return false;
-	const struct limit_verdict *verdict = &proofs->limits.rows[item].grades[plan_of_proofs(proofs)->grade];
+	const struct limit_verdict *verdict = &proofs->limits.rows[item].grades[plan_of(proofs)->grade];
 	return verdict->known && verdict->judgement.binds && !verdict->judgement.kept;
 }
 
@@ -359,13 +355,6 @@ static void put_allowed(struct text *out, const struct limit *limit)
 		text_put(out, " to ");
 	}
 	put_value_unit(out, limit->item, limit->has_high ? limit->high : limit->low);
-}
-
-static void put_place(struct text *out, const struct timeline *timeline, uint32_t cell)
-{
-	const struct cell_place place = timeline_place(timeline, cell);
-	text_printf(out, "line %" PRIu32 " (%s), cell %" PRIu32 " (%s)", place.line, timeline_line_name(timeline, cell), place.cell,
-	            timeline_region_name(timeline, cell));
 }
 
 // Whether what was measured is too low, rather than too high; of both, whichever is worse.
@@ -403,12 +392,12 @@ void put_limit_measured(struct text *out, const struct proofs *proofs, enum limi
 {
 	put_interval_unit(out, item, proofs->limits.measurement->items[item].values);
 	text_put(out, ", allowed ");
-	put_allowed(out, limit_at(proofs, item, plan_of_proofs(proofs)->grade));
+	put_allowed(out, limit_at(proofs, item, plan_of(proofs)->grade));
 }
 
 void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_item item)
 {
-	const struct limit *limit = limit_at(proofs, item, plan_of_proofs(proofs)->grade);
+	const struct limit *limit = limit_at(proofs, item, plan_of(proofs)->grade);
 	const struct measured *measured = &proofs->limits.measurement->items[item];
 	const uint32_t cell = is_too_low(proofs, limit) ? measured->low_at.from_cell : measured->high_at.from_cell;
 	text_printf(out, "%s is ", limit_item_facts(item)->name);
@@ -439,7 +428,7 @@ static bool lines_differ(const struct proofs *proofs, enum limit_item item)
 
 bool put_limit_move(struct text *out, const struct proofs *proofs, enum limit_item item)
 {
-	const struct limit_verdict *verdict = &proofs->limits.rows[item].grades[plan_of_proofs(proofs)->grade];
+	const struct limit_verdict *verdict = &proofs->limits.rows[item].grades[plan_of(proofs)->grade];
 	const struct timeline *timeline = proofs->timeline;
 	const uint32_t cell = verdict->move_cell, before = cell == 0 ? timeline->cell_count - 1 : cell - 1;
 	if (lines_differ(proofs, item)) {

@@ -9,6 +9,7 @@
 #include "view/figures.h"
 #include "view/frame.h"
 #include "view/proofs.h"
+#include "view/proofs_shared.h"
 
 static json_t *file_names(const char *name, const char *label, unsigned files)
 {
@@ -56,11 +57,6 @@ static void append_start(json_t **start, uint32_t bank, const char *stage, uint3
 	json_put(&entry, "stage", json_string(stage));
 	json_put(&entry, "state", json_integer(state));
 	json_append(start, entry);
-}
-
-static const struct plan *plan_of(const struct proofs *proofs)
-{
-	return proofs->timeline->plan;
 }
 
 // Where each stage begins in a plan's bank.

@@ -6,6 +6,7 @@
 #include "base/text.h"
 #include "catalogue/catalogue.h"
 #include "view/columns.h"
+#include "view/figures.h"
 
 #define LINE_CHARACTERS 100
 #define MOST_PLACES 6
@@ -205,14 +206,6 @@ void view_parts(struct text *out, const struct catalogue *catalogue)
 	put_memories(out, catalogue);
 	text_put(out, "\n");
 	put_logic(out, catalogue);
-}
-
-// The string of a text, which is released. NULL when memory is out.
-static json_t *json_of_text(struct text *text)
-{
-	json_t *string = text->failed ? NULL : json_string(text_string(text));
-	text_release(text);
-	return string;
 }
 
 static json_t *number_of_nanoseconds(struct fraction seconds)

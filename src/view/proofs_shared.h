@@ -62,6 +62,8 @@ void put_proof_figures(struct text *out, const struct proofs *proofs, enum proof
 
 // In proofs_text.c. The word of a verdict: "pass", "FAIL", "miss" or "none". Cannot fail.
 const char *verdict_word(const struct proofs *proofs, enum proof_kind kind);
+// Puts where a cell of the frame is: "line 17 (picture), cell 3 (sync)". When memory is out, words->failed is set.
+void put_place(struct text *words, const struct timeline *timeline, uint32_t cell);
 // Gives the details of a failed proof, and the codes that were found, to `put` one by one; it releases the words.
 typedef void put_detail(struct text *out, struct text *words);
 void put_proof_details(struct text *out, const struct proofs *proofs, enum proof_kind kind, put_detail *put);

@@ -72,8 +72,7 @@ static void put_verdict(struct report *report, const struct verdict_row *row, co
 	text_printf(report->out, "%-*s", NAME_CHARACTERS + GAP, name);
 }
 
-// "line 17 (picture), cell 3 (sync)".
-static void put_place(struct text *words, const struct timeline *timeline, uint32_t cell)
+void put_place(struct text *words, const struct timeline *timeline, uint32_t cell)
 {
 	const struct cell_place place = timeline_place(timeline, cell);
 	text_printf(words, "line %" PRIu32 " (%s), cell %" PRIu32 " (%s)", place.line, timeline_line_name(timeline, cell),

@@ -27,6 +27,32 @@ static void put_count(json_t **object, const char *key, int64_t count, int64_t u
 		json_put(object, key, json_integer(count));
 }
 
+// A list one of whose mappings has a key, with a word for its value if one is given.
+static json_t *contains_schema(const char *key, const char *word)
+{
+	json_t *item = json_pack("{s:s,s:[s]}", "type", "object", "required", key);
+	if (word != NULL)
+		json_put(&item, "properties", json_pack("{s:{s:s}}", key, "const", word));
+	return json_pack("{s:o}", "contains", item);
+}
+
+// As a condition, so that editors that know no maxContains pass over it.
+static void put_once(json_t **object, const char *key)
+{
+	json_t *then = contains_schema(key, NULL);
+	json_put(&then, "maxContains", json_integer(1));
+	json_put(object, "if", contains_schema(key, NULL));
+	json_put(object, "then", then);
+}
+
+static json_t *each_schema(const struct key *key)
+{
+	json_t *all = json_array();
+	for (size_t word = 0; word < key->shape->word_count; word++)
+		json_append(&all, contains_schema(key->name, key->shape->words[word]));
+	return all;
+}
+
 static json_t *list_schema(struct writer *writer, const struct shape *shape)
 {
 	json_t *object = json_pack("{s:s}", "type", "array");
@@ -35,14 +61,20 @@ static json_t *list_schema(struct writer *writer, const struct shape *shape)
 	put_count(&object, "maxItems", shape->most, INT64_MAX);
 	if (shape->distinct)
 		json_put(&object, "uniqueItems", json_true());
+	if (shape->once != NULL)
+		put_once(&object, shape->once);
+	if (shape->each != NULL)
+		json_put(&object, "allOf", each_schema(shape->each));
 	return object;
 }
 
 static json_t *named_schema(struct writer *writer, const struct shape *shape)
 {
 	json_t *object = json_pack("{s:s}", "type", "object");
-	json_put(&object, "propertyNames", schema_of(writer, shape->name));
-	json_put(&object, "additionalProperties", schema_of(writer, shape->item));
+	if (shape->name != NULL)
+		json_put(&object, "propertyNames", schema_of(writer, shape->name));
+	if (shape->item != NULL)
+		json_put(&object, "additionalProperties", schema_of(writer, shape->item));
 	put_count(&object, "minProperties", shape->least, 0);
 	put_count(&object, "maxProperties", shape->most, INT64_MAX);
 	if (shape->needs_name != NULL) // not all names are others
@@ -83,6 +115,45 @@ static json_t *group_schema(const struct shape *shape)
 	return ways;
 }
 
+// Where a bond is one.
+static json_t *bond_condition(const struct key_bond *bond)
+{
+	json_t *condition = json_pack("{s:[s]}", "required", bond->key), *value = NULL;
+	if (bond->absent)
+		return json_pack("{s:o}", "not", condition);
+	if (bond->holding != NULL)
+		value = contains_schema(bond->holding, NULL);
+	else if (bond->with != NULL)
+		value = json_pack("{s:s}", "const", bond->with);
+	else if (bond->but != NULL)
+		value = json_pack("{s:{s:s}}", "not", "const", bond->but);
+	else
+		return condition;
+	json_put(&condition, "properties", json_pack("{s:o}", bond->key, value));
+	return condition;
+}
+
+static json_t *bond_schema(struct writer *writer, const struct key_bond *bond)
+{
+	json_t *then = json_object(), *condition = bond_condition(bond);
+	if (!bond->optional)
+		json_put(&then, "required", json_pack("[s]", bond->needs));
+	if (bond->shape != NULL)
+		json_put(&then, "properties", json_pack("{s:o}", bond->needs, schema_of(writer, bond->shape)));
+	return json_pack("{s:o,s:o}", "if", condition, "then", then);
+}
+
+static void put_bonds(struct writer *writer, json_t **object, const struct shape *shape)
+{
+	json_t *all = json_array();
+	for (size_t index = 0; index < shape->bond_count; index++)
+		json_append(&all, bond_schema(writer, &shape->bonds[index]));
+	if (all == NULL || json_array_size(all) > 0)
+		json_put(object, "allOf", all);
+	else
+		json_decref(all);
+}
+
 static json_t *mapping_schema(struct writer *writer, const struct shape *shape)
 {
 	json_t *object = json_pack("{s:s}", "type", "object"), *properties = json_object(), *required = required_keys(shape);
@@ -100,11 +171,9 @@ static json_t *mapping_schema(struct writer *writer, const struct shape *shape)
 	else
 		json_decref(required);
 	json_put(&object, "additionalProperties", json_false());
-	put_count(&object, "minProperties", shape->least, 0);
 	if (shape->group.count > 1)
 		json_put(&object, "oneOf", group_schema(shape));
-	if (shape->bond.key != NULL)
-		json_put(&object, "dependentRequired", json_pack("{s:[s]}", shape->bond.key, shape->bond.needs));
+	put_bonds(writer, &object, shape);
 	return object;
 }
 
@@ -125,7 +194,7 @@ static json_t *plain_schema(struct writer *writer, const struct shape *shape)
 	case SHAPE_NAMED: return named_schema(writer, shape);
 	case SHAPE_LIMITS: return view_limits_schema();
 	case SHAPE_EITHER: return either_schema(writer, shape);
-	case SHAPE_TEXT: case SHAPE_NOTE: case SHAPE_WHOLE: case SHAPE_TRUTH: case SHAPE_CHOICE: case SHAPE_LISTED:
+	case SHAPE_TEXT: case SHAPE_NOTE: case SHAPE_WHOLE: case SHAPE_TRUE: case SHAPE_CHOICE: case SHAPE_LISTED:
 	case SHAPE_QUANTITY: case SHAPE_BIT_COUNT: break;
 	}
 	return view_value_schema(shape, writer->names);
@@ -196,7 +265,7 @@ json_t *view_schema(const char *title, const struct shape *root, const struct sc
 	}
 	json_decref(mapping);
 	if (has_conditions(root)) {
-		json_t *conditions = json_array();
+		json_t *bonds = json_object_get(schema, "allOf"), *conditions = bonds != NULL ? json_incref(bonds) : json_array();
 		json_append(&conditions, condition_schema(&writer, root, true));
 		json_append(&conditions, condition_schema(&writer, root, false));
 		json_put(&schema, "allOf", conditions);

@@ -1,4 +1,5 @@
 // Schemas of single values: which kinds YAML can take them for, and their forms as regular expressions.
+#include <inttypes.h>
 #include <string.h>
 
 #include "base/text.h"
@@ -41,6 +42,22 @@ static json_t *quantity_schema(unsigned dimensions, enum quantity_sign sign)
 	struct text pattern = {0};
 	put_quantity(&pattern, numbers[sign], dimensions);
 	put_pattern(&object, "pattern", &pattern);
+	return object;
+}
+
+// A whole number in its range, or a ratio, which no pattern compares with it.
+static json_t *bit_count_schema(int64_t least, int64_t most)
+{
+	json_t *object = json_pack("{s:s}", "type", "string");
+	struct text number = {0}, pattern = {0};
+	text_put(&number, "(0*(");
+	for (int64_t count = least; count <= most; count++)
+		text_printf(&number, "%s%" PRId64, count == least ? "" : "|", count);
+	text_printf(&number, ")(\\.0+)?|%s */ *" ABOVE_ZERO_PATTERN ")", least > 0 ? ABOVE_ZERO_PATTERN : NUMBER_PATTERN);
+	put_quantity(&pattern, text_string(&number), 1u << DIMENSION_BITS);
+	pattern.failed = pattern.failed || number.failed;
+	put_pattern(&object, "pattern", &pattern);
+	text_release(&number);
 	return object;
 }
 
@@ -153,11 +170,11 @@ json_t *view_value_schema(const struct shape *shape, const struct schema_names *
 	case SHAPE_TEXT: return text_schema(shape);
 	case SHAPE_NOTE: return json_pack("{s:[s,s,s,s]}", "type", "string", "number", "boolean", "null");
 	case SHAPE_WHOLE: return whole_schema(shape);
-	case SHAPE_TRUTH: return json_pack("{s:[b,b,s,s]}", "enum", 1, 0, "true", "false");
+	case SHAPE_TRUE: return json_pack("{s:[b,s]}", "enum", 1, "true");
 	case SHAPE_CHOICE: return choice_schema(shape);
 	case SHAPE_LISTED: return listed_schema(shape, names);
 	case SHAPE_QUANTITY: return quantity_schema(shape->dimensions, shape->sign);
-	case SHAPE_BIT_COUNT: return quantity_schema(1u << DIMENSION_BITS, shape->least > 0 ? QUANTITY_POSITIVE : QUANTITY_NOT_NEGATIVE);
+	case SHAPE_BIT_COUNT: return bit_count_schema(shape->least, shape->most);
 	case SHAPE_LIST: case SHAPE_MAPPING: case SHAPE_NAMED: case SHAPE_LIMITS: case SHAPE_EITHER: break;
 	}
 	return NULL;

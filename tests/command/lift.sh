@@ -114,6 +114,13 @@ holds 'its other bank: said' grep -qx '# Bank 1 of the jumpers.' "$work/out"
 ends 'a bank that there is not' 2 --bank 2 plans/pilot-station.yaml "$work/set"
 holds 'a bank that there is not: how many' grep -q 'bank: wanted 0 to 1, as the chips have 1 bank bit, found 2' "$work/err"
 
+# ---- a kind that no line has keeps its place
+
+sed 's/^lines:/&\n  spare: { regions: [ { region: rest, cells: 100 } ] }/' plans/mooring-board.yaml >"$work/spare.yaml"
+"$SCANLATCH" build "$work/spare.yaml" -o "$work/spare" --format bin >"$work/built" 2>&1 || fail 'a board with a spare line type is built'
+ends 'a spare line type, pinned' 0 --near --text "$work/spare.yaml" "$work/spare"
+holds 'a spare line type: its length' grep -qx 'line "unused 0": 2 cells, 16 ticks; 0 lines of the loop' "$work/out"
+
 # ---- a frame of several laps: 15 ticks a lap are 15/4 cycles
 
 cat >"$work/laps.yaml" <<'PLAN'

@@ -87,7 +87,7 @@ refuses 'prove: a folder and more' \
 refuses 'list: nothing' 'scanlatch list: wanted one catalogue (parts, standards or crystals), found 0' list
 refuses 'list: two' 'scanlatch list: wanted one catalogue (parts, standards or crystals), found 2' list parts standards
 refuses 'list: unknown' 'scanlatch list: there is no catalogue of "ships": wanted parts, standards or crystals' list ships
-schemas='plan set board build check crystals diff fit manifest parts prove sheet standards'
+schemas='plan set board build check crystals diff fit lift manifest parts prove sheet standards'
 refuses 'schema: unknown' "scanlatch schema: there is no schema of \"ships\"; there are ${schemas// /, }" schema ships
 refuses 'schema: two' 'scanlatch schema: wanted at most one name, found 2' schema plan set
 holds 'no refused command line wrote anything' test ! -e out

@@ -8,7 +8,7 @@ import sys
 
 import schema_validators
 
-REPORTS = ["check", "build", "prove", "diff", "sheet", "fit", "parts", "standards", "crystals", "manifest"]
+REPORTS = ["check", "build", "prove", "diff", "sheet", "fit", "lift", "parts", "standards", "crystals", "manifest"]
 
 
 def keys_of(value, found):

@@ -26,13 +26,15 @@ class Languages:
     def __init__(self):
         self.validators = {name: validator(name) for name in ("plan", "set", "board")}
 
-    def language(self, value):
+    def language(self, value, as_board):
+        if as_board:
+            return self.validators["board"]
         is_set = isinstance(value, dict) and "scanlatch-set" in value and "scanlatch" not in value
         return self.validators["set" if is_set else "plan"]
 
     def accepts(self, value, as_board=False):
-        language = self.validators["board"] if as_board else self.language(value)
-        return language.is_valid(value)
+        return self.language(value, as_board).is_valid(value)
 
-    def faults(self, value):
-        return [f"{'/'.join(map(str, fault.absolute_path))}: {fault.message}" for fault in self.language(value).iter_errors(value)]
+    def faults(self, value, as_board=False):
+        faults = self.language(value, as_board).iter_errors(value)
+        return [f"{'/'.join(map(str, fault.absolute_path))}: {fault.message}" for fault in faults]
