@@ -6,6 +6,7 @@
 
 #include "compare/compare.h"
 
+struct seen;
 struct text;
 
 enum chip_fate {
@@ -36,6 +37,8 @@ struct plan_difference {
 	const char *old_advice, *now_advice;
 	const struct proofs *images;   // where a plan is compared with images that were read: their proofs; otherwise NULL
 	const char *images_musts;      // then: of old_musts and now_musts, those of the images
+	struct seen *seen;             // then, where a must fails: what they do, which the comparison has for their side; NULL if it
+	const char *unseen;            // cannot be told in the plan's terms: why, in words
 };
 
 struct difference {
