@@ -37,11 +37,24 @@ static bool count_blocks(struct seeing *seeing)
 	return plan->blocks != NULL || seen_memory(seeing);
 }
 
+// A plan that names the state of its first cell, or of the first cell of its lines, would name the one that the images have there.
+static void find_start(struct seeing *seeing)
+{
+	struct machine_plan *machine = &seeing->seen->plan->machine;
+	const uint32_t mask = UINT32_MAX >> (32 - machine->line.state_bits), start = seeing->states[0] & mask;
+	bool same = machine->has_start;
+	for (size_t line = 0; same && machine->form == FORM_LINE_FRAME && line < seeing->line_count; line++)
+		same = (seeing->states[seeing->lines[line].first] & mask) == start;
+	if (same)
+		machine->start = start;
+}
+
 // What is laid out must be what the images do: should it not be, nothing is told rather than something wrong.
 static bool lay_out(struct seeing *seeing)
 {
 	struct seen *seen = seeing->seen;
 	const struct circle *images = &seeing->images;
+	find_start(seeing);
 	seen->timeline = timeline_create(seen->plan, seeing->diagnostics);
 	if (seen->timeline == NULL)
 		return false;
@@ -53,8 +66,8 @@ static bool lay_out(struct seeing *seeing)
 
 static bool see(struct seeing *seeing)
 {
-	return seen_cut(seeing) && seen_turn(seeing) && seen_pair(seeing) && seen_sort(seeing) && seen_divide(seeing) &&
-	       seen_hold(seeing) && count_blocks(seeing) && lay_out(seeing);
+	return seen_cut(seeing) && seen_turn(seeing) && seen_signals(seeing) && seen_pair(seeing) && seen_sort(seeing) &&
+	       seen_divide(seeing) && seen_hold(seeing) && count_blocks(seeing) && lay_out(seeing);
 }
 
 static uint64_t signal_mask(int signal)

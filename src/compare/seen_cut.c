@@ -159,6 +159,9 @@ static bool cut_images(struct seeing *seeing, uint32_t ahead)
 		asserted[cell] = lift->asserted[cell % lift->cell_count];
 		states[cell] = lift->states[cell % lift->cell_count];
 	}
+	seeing->inverted = seen_inverted(seeing, asserted, cells);
+	for (uint32_t cell = 0; cell < cells && seeing->inverted != 0; cell++)
+		asserted[cell] ^= seeing->inverted;
 	if (seeing->cut == 0)
 		mark_lines(seeing, cuts);
 	else

@@ -46,12 +46,23 @@ static const char *lifted_region_name(const struct seeing *seeing, uint32_t cell
 	return type->regions[region].name;
 }
 
+// The length of a name without the number that lifting has told it apart by.
+static size_t bare_length(const char *name)
+{
+	const size_t length = strlen(name);
+	size_t bare = length;
+	while (bare > 0 && name[bare - 1] >= '0' && name[bare - 1] <= '9')
+		bare--;
+	return bare < length && bare > 1 && name[bare - 1] == ' ' ? bare - 1 : length;
+}
+
 // A name as it is, or with the first number that makes it one that is not there yet; NULL when memory is out. It is kept with what is seen.
-static const char *name_apart(struct seeing *seeing, struct name_tree *names, const char *name)
+static const char *name_apart(struct seeing *seeing, struct name_tree *names, const char *name, size_t length)
 {
 	for (uint32_t number = 1; number < UINT32_MAX; number++) {
 		const char *numbered =
-			number == 1 ? arena_copy(seeing->seen->arena, name, strlen(name)) : arena_format(seeing->seen->arena, "%s %" PRIu32, name, number);
+			number == 1 ? arena_copy(seeing->seen->arena, name, length)
+			            : arena_format(seeing->seen->arena, "%.*s %" PRIu32, (int)length, name, number);
 		void **slot = numbered != NULL ? name_tree_slot(seeing->arena, names, numbered) : NULL;
 		if (slot == NULL)
 			return NULL;
@@ -148,6 +159,14 @@ static uint32_t next_stretched(const struct dividing *dividing, uint32_t cell, u
 	return cell;
 }
 
+// The name of a region that is none of the plan's, or the rest of one.
+static const char *other_name(struct dividing *dividing, const struct piece *piece, uint32_t first)
+{
+	const char *name = piece->region != NONE ? dividing->planned->regions[piece->region].name
+	                                         : lifted_region_name(dividing->seeing, dividing->type->first + first);
+	return name_apart(dividing->seeing, &dividing->names, name, piece->region != NONE ? strlen(name) : bare_length(name));
+}
+
 static bool add_region(struct dividing *dividing, const struct piece *piece, uint32_t first, uint32_t end, uint32_t stretched)
 {
 	struct seeing *seeing = dividing->seeing;
@@ -156,9 +175,7 @@ static bool add_region(struct dividing *dividing, const struct piece *piece, uin
 	const struct region *planned = from != NONE ? &dividing->planned->regions[from] : NULL;
 	// Where the plan asserts stretch by name it counts no cells.
 	const bool by_name = planned != NULL && (planned->assert_mask & seeing->stretch) != 0 && stretched == end - first;
-	const char *name = planned != NULL ? planned->name
-	                                   : name_apart(seeing, &dividing->names, piece->region != NONE ? dividing->planned->regions[piece->region].name
-	                                                                                                : lifted_region_name(seeing, dividing->type->first + first));
+	const char *name = planned != NULL ? planned->name : other_name(dividing, piece, first);
 	if (name == NULL)
 		return seen_memory(seeing);
 	dividing->type->region_of[dividing->line->region_count] = from;
@@ -223,7 +240,8 @@ static bool make_line(struct seeing *seeing, struct name_tree *names, size_t ind
 	}
 	uint32_t cell = type->first + type->cells / 2;
 	const char *name = planned == NULL ? lifted_type(seeing, &cell)->name : planned->name;
-	*line = (struct line_type){.name = planned != NULL && !type->is_variant ? name : name_apart(seeing, names, name),
+	const size_t length = planned == NULL ? bare_length(name) : strlen(name);
+	*line = (struct line_type){.name = planned != NULL && !type->is_variant ? name : name_apart(seeing, names, name, length),
 	                           .place = {seeing->planned->plan->source, 0, 0}};
 	return line->name != NULL ? divide(&dividing) : seen_memory(seeing);
 }

@@ -253,7 +253,8 @@ static bool cut_lines(struct pairing *pairing)
 		cut_segment(pairing, &boundaries, index);
 	if (seeing->line_count == 0)
 		return seen_refuse(seeing, "no line of the images begins where one of the plan does");
-	for (size_t line = 0; line < seeing->line_count; line++)
+	// Where the plan's frame begins within a segment, that is turned to begin there too.
+	for (size_t line = 0; line < seeing->line_count && seeing->plan.turned != 0; line++)
 		if (seeing->lines[line].planned == 0)
 			first = line;
 	return begin_at(seeing, first);
@@ -262,5 +263,5 @@ static bool cut_lines(struct pairing *pairing)
 bool seen_pair(struct seeing *seeing)
 {
 	struct pairing pairing = {.seeing = seeing, .sync = sync_mask(seeing)};
-	return list_contents(&pairing) && align_segments(&pairing) && cut_lines(&pairing);
+	return seen_number(seeing, UINT64_MAX) && list_contents(&pairing) && align_segments(&pairing) && cut_lines(&pairing);
 }

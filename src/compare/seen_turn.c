@@ -69,7 +69,7 @@ static void try_runs(struct turning *turning)
 	}
 }
 
-static bool number_segments(struct seeing *seeing, uint64_t mask)
+bool seen_number(struct seeing *seeing, uint64_t mask)
 {
 	struct circle *circles[2] = {&seeing->plan, &seeing->images};
 	struct shelf *shelf = shelf_create(seeing->arena, seeing->plan.count + seeing->images.count);
@@ -112,7 +112,7 @@ static uint64_t sync_signals(const struct seeing *seeing)
 static bool find_turn(struct seeing *seeing, struct turning *turning, uint64_t mask)
 {
 	*turning = (struct turning){.plan = &seeing->plan, .images = &seeing->images, .steps_left = MOST_STEPS};
-	if (!number_segments(seeing, mask))
+	if (!seen_number(seeing, mask))
 		return false;
 	if (seeing->start_segment != NONE)
 		try_turn(turning, seeing->start_segment);
@@ -138,5 +138,5 @@ bool seen_turn(struct seeing *seeing)
 		return false;
 	if (turning.best_alike == 0 && !find_turn(seeing, &turning, sync_signals(seeing)))
 		return false;
-	return turn_to(seeing, choose_turn(seeing, &turning)) && number_segments(seeing, UINT64_MAX);
+	return turn_to(seeing, choose_turn(seeing, &turning));
 }

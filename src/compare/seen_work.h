@@ -57,6 +57,7 @@ struct seeing {
 	uint64_t cut;              // the signal at whose leading edge lines are cut; 0: where a line-frame machine steps
 	uint64_t stretch;          // the stretch signal; 0 if there is none
 	uint32_t laps;             // of the loop in the frame
+	uint64_t inverted;         // signals whose active level is the other one
 	struct circle plan, images;
 	uint32_t *states;          // [images.cells]
 	size_t start_segment;      // of the images: where the frame begins; NONE if that is not known
@@ -76,13 +77,21 @@ struct seeing {
 bool seen_cut(struct seeing *seeing);
 // Turns the images' frame so that it begins where the plan's does.
 bool seen_turn(struct seeing *seeing);
-// Aligns the segments, and cuts the images' frame into lines.
+// Finds signals with another active level or lead, and undoes these.
+bool seen_signals(struct seeing *seeing);
+// Numbers and aligns the segments, and cuts the images' frame into lines.
 bool seen_pair(struct seeing *seeing);
 // Finds line types, and divides them into regions.
 bool seen_sort(struct seeing *seeing);
 bool seen_divide(struct seeing *seeing);
 // Divides the frame into blocks, and gives regions what they hold.
 bool seen_hold(struct seeing *seeing);
+
+// The signals that frames of one length show the other way round: asserted in as many cells as the plan has them not. Cannot fail.
+uint64_t seen_inverted(const struct seeing *seeing, const uint64_t *asserted, uint32_t cells);
+
+// Gives segments of both frames their numbers, by signals of a mask. False after reporting.
+bool seen_number(struct seeing *seeing, uint64_t mask);
 
 // Numbers stretches of cells by what they show.
 struct shelf;

@@ -1,0 +1,117 @@
+// Signals that are in all cells the other way round, or all earlier or later, than the plan has them: another active level, another lead.
+#include <string.h>
+
+#include "base/arena.h"
+#include "compare/seen_work.h"
+
+#define MOST_LEAD 16 // cells that a lead is looked for in
+
+// How many cells of a circle a signal is asserted in, and how often it begins to be.
+struct duty {
+	uint32_t cells, pulses;
+};
+
+// Of all signals: duties[]. Cells that show the same are counted at once.
+static void count_duties(const uint64_t *asserted, uint32_t cells, size_t signals, struct duty *duties)
+{
+	uint64_t before = asserted[cells - 1];
+	for (uint32_t first = 0, end; first < cells; first = end) {
+		const uint64_t shown = asserted[first];
+		for (end = first + 1; end < cells && asserted[end] == shown;)
+			end++;
+		for (size_t signal = 0; signal < signals; signal++) {
+			if ((shown >> signal & 1) == 0)
+				continue;
+			duties[signal].cells += end - first;
+			duties[signal].pulses += (before >> signal & 1) == 0;
+		}
+		before = shown;
+	}
+}
+
+uint64_t seen_inverted(const struct seeing *seeing, const uint64_t *asserted, uint32_t cells)
+{
+	const struct timeline *planned = seeing->planned;
+	struct duty plan[LIMIT_SIGNALS] = {{0, 0}}, images[LIMIT_SIGNALS] = {{0, 0}};
+	uint64_t inverted = 0;
+	if (cells != planned->cell_count)
+		return 0;
+	count_duties(planned->asserted, cells, planned->plan->signal_count, plan);
+	count_duties(asserted, cells, planned->plan->signal_count, images);
+	for (size_t signal = 0; signal < planned->plan->signal_count; signal++)
+		if (images[signal].cells == cells - plan[signal].cells && images[signal].cells != plan[signal].cells &&
+		    images[signal].pulses == plan[signal].pulses && plan[signal].pulses > 0)
+			inverted |= (uint64_t)1 << signal;
+	return inverted;
+}
+
+// Whether the images show a signal so many cells before the plan's frame does, in every cell.
+static bool leads_by(const struct seeing *seeing, size_t signal, int lead)
+{
+	const uint64_t *planned = seeing->plan.asserted, *seen = seeing->images.asserted;
+	const uint32_t cells = seeing->plan.cells;
+	uint32_t from = (uint32_t)((lead % (int64_t)cells + cells) % cells), cell = 0;
+	while (cell < cells && ((seen[cell] ^ planned[from]) >> signal & 1) == 0) {
+		cell++;
+		from = from + 1 == cells ? 0 : from + 1;
+	}
+	return cell == cells;
+}
+
+// Whether a signal changes with others somewhere in the plan's frame. One that does not, and comes earlier or later everywhere, is a region
+// that was moved.
+static bool changes_with_others(const struct circle *plan, uint64_t mask)
+{
+	uint64_t before = plan->asserted[plan->cells - 1];
+	for (uint32_t cell = 0; cell < plan->cells; cell++) {
+		const uint64_t changed = plan->asserted[cell] ^ before;
+		if ((changed & mask) != 0 && (changed & ~mask) != 0)
+			return true;
+		before = plan->asserted[cell];
+	}
+	return false;
+}
+
+// The nearest lead that explains all cells; 0 if none does, or none is needed.
+static int find_lead(const struct seeing *seeing, size_t signal)
+{
+	if (leads_by(seeing, signal, 0))
+		return 0;
+	for (int lead = 1; lead <= MOST_LEAD; lead++) {
+		if (leads_by(seeing, signal, lead))
+			return lead;
+		if (leads_by(seeing, signal, -lead))
+			return -lead;
+	}
+	return 0;
+}
+
+static bool copy_signals(struct seeing *seeing)
+{
+	struct plan *plan = seeing->seen->plan;
+	struct signal *signals = arena_array(seeing->seen->arena, plan->signal_count, sizeof *signals);
+	if (signals == NULL)
+		return seen_memory(seeing);
+	memcpy(signals, plan->signals, plan->signal_count * sizeof *signals);
+	plan->signals = signals;
+	return true;
+}
+
+bool seen_signals(struct seeing *seeing)
+{
+	struct circle *images = &seeing->images;
+	struct plan *plan = seeing->seen->plan;
+	if (!copy_signals(seeing))
+		return false;
+	for (size_t signal = 0; signal < plan->signal_count; signal++) {
+		const uint64_t mask = (uint64_t)1 << signal;
+		const bool may_lead = images->cells == seeing->plan.cells && (mask & (seeing->cut | seeing->stretch)) == 0 &&
+		                      changes_with_others(&seeing->plan, mask | seeing->stretch);
+		const int lead = may_lead ? find_lead(seeing, signal) : 0;
+		plan->signals[signal].active_high ^= (seeing->inverted & mask) != 0;
+		plan->signals[signal].lead_cells += lead;
+		for (uint32_t cell = 0; lead != 0 && cell < images->cells; cell++)
+			images->asserted[cell] = (images->asserted[cell] & ~mask) | (seeing->plan.asserted[cell] & mask);
+	}
+	return true;
+}
