@@ -58,16 +58,17 @@ static bool leads_by(const struct seeing *seeing, size_t signal, int lead)
 	return cell == cells;
 }
 
-// Whether a signal changes with others somewhere in the plan's frame. One that does not, and comes earlier or later everywhere, is a region
-// that was moved.
-static bool changes_with_others(const struct circle *plan, uint64_t mask)
+// Whether a signal changes in the plan's frame with others somewhere that still change there in the images. One that changes alone, or takes
+// all others with it, is a region that was moved.
+static bool leaves_others(const struct seeing *seeing, uint64_t mask, uint64_t others)
 {
-	uint64_t before = plan->asserted[plan->cells - 1];
-	for (uint32_t cell = 0; cell < plan->cells; cell++) {
-		const uint64_t changed = plan->asserted[cell] ^ before;
-		if ((changed & mask) != 0 && (changed & ~mask) != 0)
+	const uint64_t *planned = seeing->plan.asserted, *seen = seeing->images.asserted;
+	uint32_t before = seeing->plan.cells - 1;
+	for (uint32_t cell = 0; cell < seeing->plan.cells; cell++) {
+		const uint64_t changed = planned[cell] ^ planned[before], changed_now = seen[cell] ^ seen[before];
+		if ((changed & mask) != 0 && (changed & others) != 0 && (changed & others) == (changed_now & others))
 			return true;
-		before = plan->asserted[cell];
+		before = cell;
 	}
 	return false;
 }
@@ -106,7 +107,7 @@ bool seen_signals(struct seeing *seeing)
 	for (size_t signal = 0; signal < plan->signal_count; signal++) {
 		const uint64_t mask = (uint64_t)1 << signal;
 		const bool may_lead = images->cells == seeing->plan.cells && (mask & (seeing->cut | seeing->stretch)) == 0 &&
-		                      changes_with_others(&seeing->plan, mask | seeing->stretch);
+		                      leaves_others(seeing, mask, ~(mask | seeing->stretch));
 		const int lead = may_lead ? find_lead(seeing, signal) : 0;
 		plan->signals[signal].active_high ^= (seeing->inverted & mask) != 0;
 		plan->signals[signal].lead_cells += lead;
