@@ -4,6 +4,7 @@
 
 #include "base/arena.h"
 #include "base/diagnostics.h"
+#include "compare/compare.h"
 #include "compare/seen_work.h"
 
 #define MOST_WORK 16000000u // pairs that alignments look at
@@ -86,23 +87,95 @@ static void begin(struct seeing *seeing)
 	*seeing->seen->plan = *plan;
 }
 
-// The board with codes that its signals may be read by. NULL when memory is out.
-static const struct plan *board_with_codes(struct seeing *seeing)
+// What every try starts from.
+struct sight {
+	const struct timeline *planned;
+	const struct lift *lift;
+	struct seen_options options;
+	struct diagnostics *diagnostics;
+	uint32_t start;            // the cell of the loop in which the frame begins, as the first try has it
+};
+
+static struct seen *try_to_see(struct sight *sight, enum seen_try try)
 {
-	const struct plan *plan = seeing->planned->plan;
-	struct plan *board = arena_alloc(seeing->arena, sizeof *board);
-	struct signal *signals = arena_array(seeing->arena, plan->signal_count, sizeof *signals);
+	struct arena *arena = arena_create(), *scratch = arena_create();
+	struct seen *seen = arena != NULL ? arena_alloc(arena, sizeof *seen) : NULL;
+	struct plan *plan = seen != NULL ? arena_alloc(arena, sizeof *plan) : NULL;
+	struct seeing seeing = {.arena = scratch, .seen = seen, .planned = sight->planned, .options = sight->options, .lift = sight->lift,
+	                        .try = try, .near_start = sight->start, .diagnostics = sight->diagnostics};
+	bool good = false;
+	if (plan == NULL || scratch == NULL) {
+		seen_memory(&seeing);
+	} else {
+		*seen = (struct seen){.arena = arena, .plan = plan};
+		begin(&seeing);
+		good = see(&seeing);
+		sight->start = seeing.images.turned;
+	}
+	arena_destroy(scratch);
+	if (good)
+		return seen;
+	if (plan != NULL)
+		timeline_destroy(seen->timeline);
+	arena_destroy(arena);
+	return NULL;
+}
+
+// How many changes there are but those of words; SIZE_MAX when memory is out.
+static size_t count_changes(const struct timeline *planned, const struct seen *seen)
+{
+	struct comparison *comparison = comparison_create(seen->timeline, planned);
+	size_t count = 0;
+	if (comparison == NULL)
+		return SIZE_MAX;
+	for (size_t index = 0; index < comparison->count; index++)
+		count += comparison->changes[index].section != CHANGE_WORDS && comparison->changes[index].section != CHANGE_LIMITS;
+	comparison_destroy(comparison);
+	return count;
+}
+
+// Another try, if that leaves fewer changes than *changes. What it cannot do is no fault.
+static struct seen *try_again(struct sight *sight, enum seen_try try, struct seen *first, size_t *changes)
+{
+	sight->diagnostics = diagnostics_create();
+	struct seen *second = sight->diagnostics != NULL ? try_to_see(sight, try) : NULL;
+	diagnostics_destroy(sight->diagnostics);
+	const size_t others = second != NULL ? count_changes(sight->planned, second) : SIZE_MAX;
+	const bool better = others < *changes;
+	*changes = better ? others : *changes;
+	seen_destroy(better ? first : second);
+	return better ? second : first;
+}
+
+// No pin tells where the lines of a loop machine begin.
+static struct seen *try_other_cuts(struct sight *sight, struct seen *seen)
+{
+	size_t changes = count_changes(sight->planned, seen);
+	if (sight->planned->plan->machine.form != FORM_LOOP)
+		return seen;
+	if (changes > 1 && sight->planned->cell_count == seen->timeline->cell_count)
+		seen = try_again(sight, TRY_PLANNED_LINES, seen, &changes);
+	if (changes > 1)
+		seen = try_again(sight, TRY_CUTS, seen, &changes);
+	return seen;
+}
+
+// The board with codes that its signals may be read by. NULL when memory is out.
+static const struct plan *board_with_codes(struct arena *arena, const struct plan *plan, const struct seen_options *options)
+{
+	struct plan *board = arena_alloc(arena, sizeof *board);
+	struct signal *signals = arena_array(arena, plan->signal_count, sizeof *signals);
 	if (board == NULL || signals == NULL)
 		return NULL;
 	*board = *plan;
 	board->signals = signals;
 	for (size_t index = 0; index < plan->signal_count; index++) {
 		signals[index] = plan->signals[index];
-		if (!signals[index].auto_codes || seeing->options.code_counts[index] == 0)
+		if (!signals[index].auto_codes || options->code_counts[index] == 0)
 			continue;
 		signals[index].auto_codes = false;
-		signals[index].codes = seeing->options.codes[index];
-		signals[index].code_count = seeing->options.code_counts[index];
+		signals[index].codes = options->codes[index];
+		signals[index].code_count = options->code_counts[index];
 	}
 	return board;
 }
@@ -110,30 +183,22 @@ static const struct plan *board_with_codes(struct seeing *seeing)
 struct seen *seen_create(const struct timeline *planned, const struct image *images, struct seen_options options,
                          struct diagnostics *diagnostics)
 {
-	struct arena *arena = arena_create(), *scratch = arena_create();
-	struct seen *seen = arena != NULL ? arena_alloc(arena, sizeof *seen) : NULL;
-	struct plan *plan = seen != NULL ? arena_alloc(arena, sizeof *plan) : NULL;
-	struct seeing seeing = {.arena = scratch, .seen = seen, .planned = planned, .options = options, .diagnostics = diagnostics};
 	const struct lift_options bare = {.cut_signal = SIZE_MAX, .bank = options.bank, .without_holds = true};
-	const struct plan *board = plan != NULL && scratch != NULL ? board_with_codes(&seeing) : NULL;
-	struct lift *lift = NULL;
-	bool good = false;
-	if (board == NULL) {
-		seen_memory(&seeing);
-	} else {
-		*seen = (struct seen){.arena = arena, .plan = plan};
-		seeing.lift = lift = lift_images(board, images, bare, diagnostics);
-		begin(&seeing);
-		good = lift != NULL && see(&seeing);
-	}
+	struct sight sight = {.planned = planned, .options = options, .diagnostics = diagnostics};
+	struct arena *arena = arena_create();
+	const struct plan *board = arena != NULL ? board_with_codes(arena, planned->plan, &options) : NULL;
+	struct lift *lift = board != NULL ? lift_images(board, images, bare, diagnostics) : NULL;
+	struct seen *seen = NULL;
+	if (board == NULL)
+		diagnose(diagnostics, RULE_OUT_OF_MEMORY, (struct place){planned->plan->source, 0, 0}, "memory is out");
+	sight.lift = lift;
+	if (lift != NULL)
+		seen = try_to_see(&sight, TRY_SYNC);
+	if (seen != NULL)
+		seen = try_other_cuts(&sight, seen);
 	lift_destroy(lift);
-	arena_destroy(scratch);
-	if (good)
-		return seen;
-	if (board != NULL)
-		timeline_destroy(seen->timeline);
 	arena_destroy(arena);
-	return NULL;
+	return seen;
 }
 
 void seen_destroy(struct seen *seen)

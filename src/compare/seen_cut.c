@@ -3,6 +3,8 @@
 #include "compare/seen_work.h"
 
 #define MOST_LAPS 8u // of the images' loop in a frame
+#define MOST_SHIFT 16u // cells that a frame's first cell is looked for in, either way
+#define MOST_SHIFTED_CELLS 1048576u // of a frame in which it is
 #define NEAR_SHARE 16u // of a line: so far from where the plan has it may sync be for the frame's first cell to be believed
 
 static bool rises(const uint64_t *asserted, uint32_t cells, uint32_t cell, uint64_t cut)
@@ -92,12 +94,13 @@ static void mark_rises(const struct seeing *seeing, const uint64_t *asserted, ui
 static bool cut_plan(struct seeing *seeing, uint32_t ahead)
 {
 	const struct timeline *planned = seeing->planned;
+	const bool by_lines = seeing->cut == 0 || seeing->try == TRY_PLANNED_LINES;
 	uint8_t *cuts = arena_alloc(seeing->arena, planned->cell_count);
 	if (cuts == NULL)
 		return seen_memory(seeing);
-	for (uint32_t line = 0; line < planned->line_count && seeing->cut == 0; line++)
+	for (uint32_t line = 0; line < planned->line_count && by_lines; line++)
 		cuts[planned->lines[line].first_cell] = 1;
-	if (seeing->cut != 0)
+	if (!by_lines)
 		mark_rises(seeing, planned->asserted, planned->cell_count, ahead, cuts);
 	return make_circle(seeing, &seeing->plan, planned->asserted, planned->cell_count, cuts);
 }
@@ -127,21 +130,55 @@ static uint32_t find_start(const struct seeing *seeing)
 	return seeing->options.has_start ? cell : lift->cell_count;
 }
 
-// If the frame's first cell is about as far before sync as in the plan, lines are cut where it is.
+// If the first line's sync is about as far from the frame's first cell as in the plan, all lines are taken to be cut where it tells.
 static uint32_t ahead_in_images(const struct seeing *seeing, const uint64_t *asserted, uint32_t cells, uint32_t start, uint32_t ahead)
 {
-	const uint32_t line = seeing->planned->cell_count / seeing->planned->line_count;
-	const bool known = start < seeing->lift->cell_count && ahead > 0 && seeing->plan.turned == 0;
-	const uint32_t found = known ? cells_to_rise(asserted, cells, start, seeing->cut) : ahead;
-	return (found < ahead ? ahead - found : found - ahead) <= line / NEAR_SHARE ? found : ahead;
+	const struct timeline *planned = seeing->planned;
+	const uint32_t line = planned->cell_count / planned->line_count;
+	if (start == seeing->lift->cell_count)
+		return ahead;
+	const int64_t later = (int64_t)cells_to_rise(asserted, cells, start, seeing->cut) -
+	                      cells_to_rise(planned->asserted, planned->cell_count, 0, seeing->cut);
+	return (later < 0 ? -later : later) <= line / NEAR_SHARE && ahead + later >= 0 ? (uint32_t)(ahead + later) : ahead;
+}
+
+// How many signals differ over the frame if its first cell is a cell of the loop.
+static uint64_t count_differing(const struct seeing *seeing, const uint64_t *asserted, uint32_t cells, uint32_t start)
+{
+	uint64_t count = 0;
+	for (uint32_t cell = 0, from = start; cell < cells; cell++, from = from + 1 == cells ? 0 : from + 1)
+		for (uint64_t differing = asserted[from] ^ seeing->planned->asserted[cell]; differing != 0; differing &= differing - 1)
+			count++;
+	return count;
+}
+
+// Where the frame begins, if it is not known: of the cells near to one, that from which most is as planned.
+static uint32_t best_start(const struct seeing *seeing, const uint64_t *asserted, uint32_t cells, uint32_t near)
+{
+	uint32_t best = near;
+	uint64_t fewest = count_differing(seeing, asserted, cells, near);
+	for (uint32_t off = 1; off <= MOST_SHIFT && off < cells && cells <= MOST_SHIFTED_CELLS; off++) {
+		const uint32_t starts[2] = {(near + off) % cells, (near + cells - off) % cells};
+		for (unsigned side = 0; side < 2; side++) {
+			const uint64_t differing = count_differing(seeing, asserted, cells, starts[side]);
+			best = differing < fewest ? starts[side] : best;
+			fewest = differing < fewest ? differing : fewest;
+		}
+	}
+	return best;
+}
+
+static void mark_planned_lines(const struct seeing *seeing, uint32_t cells, uint32_t start, uint8_t *cuts)
+{
+	for (uint32_t line = 0; line < seeing->planned->line_count; line++)
+		cuts[(start + seeing->planned->lines[line].first_cell) % cells] = 1;
 }
 
 static void find_start_segment(struct seeing *seeing, uint32_t start)
 {
 	const struct circle *images = &seeing->images;
 	const uint32_t first = (start + images->cells - images->turned) % images->cells;
-	seeing->start_segment = NONE;
-	for (size_t index = 0; index < images->count && start < seeing->lift->cell_count; index++)
+	for (size_t index = 0; index < images->count; index++)
 		if (images->segments[index].first == first)
 			seeing->start_segment = index;
 }
@@ -149,7 +186,8 @@ static void find_start_segment(struct seeing *seeing, uint32_t start)
 static bool cut_images(struct seeing *seeing, uint32_t ahead)
 {
 	const struct lift *lift = seeing->lift;
-	const uint32_t cells = seeing->laps * lift->cell_count, start = find_start(seeing);
+	const uint32_t cells = seeing->laps * lift->cell_count;
+	uint32_t start = find_start(seeing);
 	uint64_t *asserted = arena_array(seeing->arena, cells, sizeof *asserted);
 	uint32_t *states = arena_array(seeing->arena, cells, sizeof *states);
 	uint8_t *cuts = arena_alloc(seeing->arena, cells);
@@ -162,14 +200,20 @@ static bool cut_images(struct seeing *seeing, uint32_t ahead)
 	seeing->inverted = seen_inverted(seeing, asserted, cells);
 	for (uint32_t cell = 0; cell < cells && seeing->inverted != 0; cell++)
 		asserted[cell] ^= seeing->inverted;
-	if (seeing->cut == 0)
+	if (seeing->try == TRY_PLANNED_LINES && start == lift->cell_count)
+		start = best_start(seeing, asserted, cells, seeing->near_start);
+	if (seeing->try == TRY_PLANNED_LINES)
+		mark_planned_lines(seeing, cells, start, cuts);
+	else if (seeing->cut == 0)
 		mark_lines(seeing, cuts);
 	else
 		mark_rises(seeing, asserted, cells, ahead_in_images(seeing, asserted, cells, start, ahead), cuts);
 	if (!make_circle(seeing, &seeing->images, asserted, cells, cuts))
 		return false;
 	seeing->states = turned_copy(seeing->arena, states, cells, sizeof *states, seeing->images.turned);
-	find_start_segment(seeing, start);
+	seeing->start_segment = NONE;
+	if (seeing->try == TRY_PLANNED_LINES || start < lift->cell_count)
+		find_start_segment(seeing, start);
 	return seeing->states != NULL || seen_memory(seeing);
 }
 

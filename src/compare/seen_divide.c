@@ -205,6 +205,18 @@ static size_t most_regions(const struct dividing *dividing)
 	return count;
 }
 
+static bool note_cells(struct dividing *dividing)
+{
+	struct seen_type *type = dividing->type;
+	type->cells_of = arena_array(dividing->seeing->arena, dividing->planned->region_count, sizeof *type->cells_of);
+	if (type->cells_of == NULL)
+		return seen_memory(dividing->seeing);
+	for (size_t piece = 0; piece < dividing->piece_count; piece++)
+		if (dividing->pieces[piece].region != NONE)
+			type->cells_of[dividing->pieces[piece].region] = dividing->pieces[piece].cells;
+	return true;
+}
+
 static bool divide(struct dividing *dividing)
 {
 	struct seeing *seeing = dividing->seeing;
@@ -224,7 +236,7 @@ static bool divide(struct dividing *dividing)
 	for (size_t piece = 0; piece < dividing->piece_count; piece++)
 		if (!add_piece(dividing, &dividing->pieces[piece]))
 			return false;
-	return true;
+	return dividing->planned == NULL || note_cells(dividing);
 }
 
 static bool make_line(struct seeing *seeing, struct name_tree *names, size_t index)
@@ -246,19 +258,36 @@ static bool make_line(struct seeing *seeing, struct name_tree *names, size_t ind
 	return line->name != NULL ? divide(&dividing) : seen_memory(seeing);
 }
 
-bool seen_divide(struct seeing *seeing)
+// Whether pins see all edges of a line type of the plan.
+static bool sees_edges(const struct seeing *seeing, const struct seen_type *type)
 {
-	struct plan *plan = seeing->seen->plan;
+	const struct line_type *line = type->planned != NONE ? &seeing->planned->plan->lines[type->planned] : NULL;
+	bool seen = true;
+	for (size_t region = 1; line != NULL && seen && region < line->region_count; region++)
+		seen = ((line->regions[region].assert_mask ^ line->regions[region - 1].assert_mask) & ~seeing->stretch) != 0;
+	return seen;
+}
+
+// First those that show all of the plan's edges, which others may then follow.
+static bool make_lines(struct seeing *seeing)
+{
 	struct name_tree names = {NULL};
-	plan->lines = arena_array(seeing->seen->arena, seeing->type_count, sizeof *plan->lines);
-	plan->line_count = seeing->type_count;
-	if (plan->lines == NULL || !list_named(seeing))
-		return seen_memory(seeing);
 	for (size_t line = 0; line < seeing->planned->plan->line_count; line++)
 		if (!take_name(seeing, &names, seeing->planned->plan->lines[line].name))
 			return seen_memory(seeing);
-	for (size_t index = 0; index < seeing->type_count; index++)
-		if (!make_line(seeing, &names, index))
-			return false;
+	for (unsigned pass = 0; pass < 2; pass++)
+		for (size_t index = 0; index < seeing->type_count; index++)
+			if (sees_edges(seeing, &seeing->types[index]) == (pass == 0) && !make_line(seeing, &names, index))
+				return false;
 	return true;
+}
+
+bool seen_divide(struct seeing *seeing)
+{
+	struct plan *plan = seeing->seen->plan;
+	plan->lines = arena_array(seeing->seen->arena, seeing->type_count, sizeof *plan->lines);
+	plan->line_count = seeing->type_count;
+	if (plan->lines == NULL)
+		return seen_memory(seeing);
+	return list_named(seeing) && make_lines(seeing);
 }

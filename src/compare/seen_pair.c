@@ -204,7 +204,8 @@ static void cut_segment(const struct pairing *pairing, const struct boundaries *
 	}
 	for (size_t boundary = boundaries->first_of[like]; boundary < boundaries->first_of[like + 1]; boundary++) {
 		const struct boundary *here = &boundaries->list[boundary];
-		const uint32_t cell = moved_cell(&seeing->plan.segments[like], seen, here->cell);
+		const bool at_cut = seeing->try == TRY_CUTS && boundaries->first_of[like + 1] - boundaries->first_of[like] == 1;
+		const uint32_t cell = at_cut ? 0 : moved_cell(&seeing->plan.segments[like], seen, here->cell);
 		add_line(seeing, seen->first + cell, paired != NONE ? here->line : NONE, seeing->planned->lines[here->line].type);
 	}
 }

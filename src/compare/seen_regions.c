@@ -11,6 +11,7 @@
 #define COST_LENGTH 2u
 #define COST_ALONE 5u          // a piece that is no region, a region that is nowhere
 #define MOST_SPAN 16u          // regions that one piece may be
+#define MOST_OTHERS 1000u      // line types that are looked at for the same regions
 #define MOST_PAIRS 250000u     // of pieces and regions
 
 enum step { STEP_END, STEP_PIECE_ALONE, STEP_REGION_ALONE, STEP_SPAN }; // STEP_SPAN + n: n + 1 regions; above MOST_SPAN: without odd ones
@@ -22,6 +23,8 @@ struct cell {
 
 // Pieces and regions that are not one another from either end on.
 struct reading {
+	const struct seeing *seeing;
+	size_t planned_type;
 	const struct region *regions;
 	const struct laid_region *laid;
 	const struct piece *pieces;
@@ -121,6 +124,40 @@ static size_t stretched_region(const struct span *span)
 	return starts_there ? longest : span->count - 1;
 }
 
+// Whether another line type has the same regions there in the plan, and where all their edges are seen they fill the piece too: then its
+// edges are where that has them, as lines are described alike.
+static bool take_lengths(const struct span *span, const struct seen_type *other, int64_t *lengths)
+{
+	const struct reading *reading = span->reading;
+	const struct timeline *planned = reading->seeing->planned;
+	const struct line_type *here = &planned->plan->lines[reading->planned_type], *there = &planned->plan->lines[other->planned];
+	const struct laid_line *laid_here = &planned->types[reading->planned_type], *laid_there = &planned->types[other->planned];
+	int64_t sum = 0;
+	for (size_t index = 0; index < span->count; index++) {
+		const size_t region = reading->first_region + span->regions[index];
+		if (region >= there->region_count || strcmp(here->regions[region].name, there->regions[region].name) != 0 ||
+		    laid_here->regions[region].cells != laid_there->regions[region].cells || other->cells_of[region] == 0)
+			return false;
+		lengths[index] = other->cells_of[region];
+		sum += lengths[index];
+	}
+	return sum == span->piece->cells;
+}
+
+static bool find_lengths(const struct span *span, int64_t *lengths)
+{
+	const struct seeing *seeing = span->reading->seeing;
+	int64_t found[MOST_SPAN];
+	for (size_t type = 0; type < seeing->type_count && type < MOST_OTHERS; type++) {
+		const struct seen_type *other = &seeing->types[type];
+		if (other->cells_of == NULL || other->is_variant || !take_lengths(span, other, found))
+			continue;
+		memcpy(lengths, found, span->count * sizeof *found);
+		return true;
+	}
+	return false;
+}
+
 // Cuts a piece into its regions. What is shorter keeps a cell; the next ones give what is missing.
 static size_t put_span(const struct span *span, struct piece *out)
 {
@@ -129,6 +166,8 @@ static size_t put_span(const struct span *span, struct piece *out)
 	uint32_t first = span->piece->first;
 	for (size_t index = 0; index < span->count; index++)
 		lengths[index] = planned_cells(span, index);
+	if (more != 0 && find_lengths(span, lengths))
+		more = 0;
 	for (size_t step = 0; step < span->count && more != 0; step++) {
 		int64_t *length = &lengths[(at + step) % span->count];
 		const int64_t given = *length + more < 1 ? 1 - *length : more;
@@ -178,9 +217,15 @@ static size_t walk_table(const struct reading *reading, struct piece *out)
 	return count;
 }
 
-static bool is_region(const struct piece *piece, const struct region *region, const struct laid_region *laid, uint64_t stretch)
+// Whether a piece is a region and nothing else can be.
+static bool is_region(const struct seeing *seeing, const struct piece *piece, size_t planned_type, size_t region)
 {
-	return piece->cells == laid->cells && ((piece->asserted ^ region->assert_mask) & ~stretch) == 0;
+	const struct line_type *line = &seeing->planned->plan->lines[planned_type];
+	const uint64_t asserted = line->regions[region].assert_mask | seeing->stretch;
+	const bool after_same = region > 0 && (line->regions[region - 1].assert_mask | seeing->stretch) == asserted;
+	const bool before_same = region + 1 < line->region_count && (line->regions[region + 1].assert_mask | seeing->stretch) == asserted;
+	return piece->cells == seeing->planned->types[planned_type].regions[region].cells && (piece->asserted | seeing->stretch) == asserted &&
+	       !after_same && !before_same;
 }
 
 // Reads what is left of a line between its ends; returns how many pieces that makes. False when memory is out, or there is too much.
@@ -206,13 +251,13 @@ bool seen_match_regions(struct seeing *seeing, size_t planned_type, struct piece
 	size_t front = 0, piece_end = *count, region_end = line->region_count, middle = 0;
 	if (out == NULL)
 		return seen_memory(seeing);
-	for (; front < piece_end && front < region_end && is_region(&list[front], &line->regions[front], &laid->regions[front], seeing->stretch); front++)
+	for (; front < piece_end && front < region_end && is_region(seeing, &list[front], planned_type, front); front++)
 		list[front].region = front;
-	for (; piece_end > front && region_end > front && is_region(&list[piece_end - 1], &line->regions[region_end - 1],
-	                                                            &laid->regions[region_end - 1], seeing->stretch); piece_end--, region_end--)
+	for (; piece_end > front && region_end > front && is_region(seeing, &list[piece_end - 1], planned_type, region_end - 1);
+	     piece_end--, region_end--)
 		list[piece_end - 1].region = region_end - 1;
 	const struct piece *last = &list[*count - 1];
-	struct reading reading = {.regions = line->regions + front, .laid = laid->regions + front, .pieces = list + front,
+	struct reading reading = {.seeing = seeing, .planned_type = planned_type, .regions = line->regions + front, .laid = laid->regions + front, .pieces = list + front,
 	                          .piece_count = piece_end - front, .region_count = region_end - front, .first_region = front,
 	                          .cells = last->first + last->cells, .planned_cells = laid->cells, .stretch = seeing->stretch};
 	if (!read_middle(seeing, &reading, out + front, &middle))

@@ -4,7 +4,8 @@
 #include "base/arena.h"
 #include "compare/seen_work.h"
 
-#define MOST_LEAD 16 // cells that a lead is looked for in
+#define MOST_LEAD 16 // cells that a lead is looked for in, and of a line at most a quarter
+#define INVERTED_SHARE 16 // of the cells: more may not be as planned
 
 // How many cells of a circle a signal is asserted in, and how often it begins to be.
 struct duty {
@@ -78,7 +79,8 @@ static int find_lead(const struct seeing *seeing, size_t signal)
 {
 	if (leads_by(seeing, signal, 0))
 		return 0;
-	for (int lead = 1; lead <= MOST_LEAD; lead++) {
+	const uint32_t quarter = seeing->planned->cell_count / seeing->planned->line_count / 4;
+	for (int lead = 1; lead <= MOST_LEAD && (uint32_t)lead <= quarter; lead++) {
 		if (leads_by(seeing, signal, lead))
 			return lead;
 		if (leads_by(seeing, signal, -lead))
@@ -98,21 +100,40 @@ static bool copy_signals(struct seeing *seeing)
 	return true;
 }
 
-bool seen_signals(struct seeing *seeing)
+// Leaves a signal as it is read if it is not the other way round in nearly all cells.
+static void check_inverted(struct seeing *seeing, uint64_t mask)
 {
 	struct circle *images = &seeing->images;
+	uint32_t other = 0;
+	for (uint32_t cell = 0; cell < images->cells; cell++)
+		other += ((images->asserted[cell] ^ seeing->plan.asserted[cell]) & mask) != 0;
+	if (other <= images->cells / INVERTED_SHARE)
+		return;
+	seeing->inverted &= ~mask;
+	for (uint32_t cell = 0; cell < images->cells; cell++)
+		images->asserted[cell] ^= mask;
+}
+
+static void find_level_and_lead(struct seeing *seeing, size_t index, struct signal *signal)
+{
+	struct circle *images = &seeing->images;
+	const uint64_t mask = (uint64_t)1 << index;
+	const bool may_lead = (mask & (seeing->cut | seeing->stretch | seeing->inverted)) == 0;
+	if ((seeing->inverted & mask) != 0)
+		check_inverted(seeing, mask);
+	const int lead = may_lead && leaves_others(seeing, mask, ~(mask | seeing->stretch)) ? find_lead(seeing, index) : 0;
+	signal->active_high ^= (seeing->inverted & mask) != 0;
+	signal->lead_cells += lead;
+	for (uint32_t cell = 0; lead != 0 && cell < images->cells; cell++)
+		images->asserted[cell] = (images->asserted[cell] & ~mask) | (seeing->plan.asserted[cell] & mask);
+}
+
+bool seen_signals(struct seeing *seeing)
+{
 	struct plan *plan = seeing->seen->plan;
 	if (!copy_signals(seeing))
 		return false;
-	for (size_t signal = 0; signal < plan->signal_count; signal++) {
-		const uint64_t mask = (uint64_t)1 << signal;
-		const bool may_lead = images->cells == seeing->plan.cells && (mask & (seeing->cut | seeing->stretch)) == 0 &&
-		                      leaves_others(seeing, mask, ~(mask | seeing->stretch));
-		const int lead = may_lead ? find_lead(seeing, signal) : 0;
-		plan->signals[signal].active_high ^= (seeing->inverted & mask) != 0;
-		plan->signals[signal].lead_cells += lead;
-		for (uint32_t cell = 0; lead != 0 && cell < images->cells; cell++)
-			images->asserted[cell] = (images->asserted[cell] & ~mask) | (seeing->plan.asserted[cell] & mask);
-	}
+	for (size_t signal = 0; signal < plan->signal_count && seeing->images.cells == seeing->plan.cells; signal++)
+		find_level_and_lead(seeing, signal, &plan->signals[signal]);
 	return true;
 }

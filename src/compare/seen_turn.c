@@ -126,7 +126,7 @@ static size_t choose_turn(const struct seeing *seeing, struct turning *turning)
 	const size_t start = seeing->start_segment;
 	if (start == NONE)
 		return turning->best;
-	if (seeing->options.start_is_planned || 2 * count_alike(turning, start) >= turning->best_alike)
+	if (seeing->options.start_is_planned || seeing->try == TRY_PLANNED_LINES || 2 * count_alike(turning, start) >= turning->best_alike)
 		return start;
 	return turning->best;
 }

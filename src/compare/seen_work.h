@@ -40,6 +40,7 @@ struct seen_type {
 	size_t first_line;
 	uint32_t lines;            // 0: of a type that the plan's frame has none of either
 	size_t *region_of;         // [regions]: the plan's region that one is, or NONE
+	uint32_t *cells_of;        // [the plan's regions]: how long one is here; 0: it is not. NULL: not divided yet, or the plan has it not
 };
 
 // A line as it was lifted, which has names by roles.
@@ -48,12 +49,21 @@ struct named_line {
 	uint32_t type;
 };
 
+// How lines of a loop machine, whose ends no pin tells, are looked for. What leaves fewer changes is told.
+enum seen_try {
+	TRY_SYNC,                  // as far before sync as in the line of the plan that one is
+	TRY_CUTS,                  // as far before sync as most lines of the plan
+	TRY_PLANNED_LINES          // as long as the plan's, of a frame that is as long as the plan's
+};
+
 struct seeing {
 	struct arena *arena;       // of this work
 	struct seen *seen;
 	const struct timeline *planned;
 	struct seen_options options;
 	const struct lift *lift;
+	enum seen_try try;
+	uint32_t near_start;       // TRY_PLANNED_LINES: the cell of the loop near which the frame begins
 	uint64_t cut;              // the signal at whose leading edge lines are cut; 0: where a line-frame machine steps
 	uint64_t stretch;          // the stretch signal; 0 if there is none
 	uint32_t laps;             // of the loop in the frame
