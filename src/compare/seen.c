@@ -38,12 +38,13 @@ static bool count_blocks(struct seeing *seeing)
 	return plan->blocks != NULL || seen_memory(seeing);
 }
 
-// A plan that names the state of its first cell, or of the first cell of its lines, would name the one that the images have there.
+// A plan that names the state of its first cell, or of the first cell of its lines, would name the one that the images have there; of a
+// frame as long as planned, or else it is none that was meant.
 static void find_start(struct seeing *seeing)
 {
 	struct machine_plan *machine = &seeing->seen->plan->machine;
 	const uint32_t mask = UINT32_MAX >> (32 - machine->line.state_bits), start = seeing->states[0] & mask;
-	bool same = machine->has_start;
+	bool same = machine->has_start && seeing->images.cells == seeing->plan.cells;
 	for (size_t line = 0; same && machine->form == FORM_LINE_FRAME && line < seeing->line_count; line++)
 		same = (seeing->states[seeing->lines[line].first] & mask) == start;
 	if (same)
@@ -93,8 +94,18 @@ struct sight {
 	const struct lift *lift;
 	struct seen_options options;
 	struct diagnostics *diagnostics;
-	uint32_t start;            // the cell of the loop in which the frame begins, as the first try has it
+	uint32_t start;            // the cell of the loop in which the frame begins, as the last try has it
+	bool other_signals;        // some try took signals for other ones
 };
+
+static bool differ_in_signals(const struct plan *planned, const struct plan *seen)
+{
+	bool differ = false;
+	for (size_t signal = 0; !differ && signal < planned->signal_count; signal++)
+		differ = planned->signals[signal].active_high != seen->signals[signal].active_high ||
+		         planned->signals[signal].lead_cells != seen->signals[signal].lead_cells;
+	return differ;
+}
 
 static struct seen *try_to_see(struct sight *sight, enum seen_try try)
 {
@@ -111,6 +122,7 @@ static struct seen *try_to_see(struct sight *sight, enum seen_try try)
 		begin(&seeing);
 		good = see(&seeing);
 		sight->start = seeing.images.turned;
+		sight->other_signals = sight->other_signals || differ_in_signals(seeing.planned->plan, plan);
 	}
 	arena_destroy(scratch);
 	if (good)
@@ -147,16 +159,17 @@ static struct seen *try_again(struct sight *sight, enum seen_try try, struct see
 	return better ? second : first;
 }
 
-// No pin tells where the lines of a loop machine begin.
-static struct seen *try_other_cuts(struct sight *sight, struct seen *seen)
+// No pin tells where the lines of a loop machine begin; and a signal may look as if it were of another level or lead.
+static struct seen *try_other_ways(struct sight *sight, struct seen *seen)
 {
+	const bool loop = sight->planned->plan->machine.form == FORM_LOOP;
 	size_t changes = count_changes(sight->planned, seen);
-	if (sight->planned->plan->machine.form != FORM_LOOP)
-		return seen;
-	if (changes > 1 && sight->planned->cell_count == seen->timeline->cell_count)
+	if (changes > 1 && loop && sight->planned->cell_count == seen->timeline->cell_count)
 		seen = try_again(sight, TRY_PLANNED_LINES, seen, &changes);
-	if (changes > 1)
+	if (changes > 1 && loop)
 		seen = try_again(sight, TRY_CUTS, seen, &changes);
+	if (changes > 1 && sight->other_signals)
+		seen = try_again(sight, TRY_AS_READ, seen, &changes);
 	return seen;
 }
 
@@ -195,7 +208,7 @@ struct seen *seen_create(const struct timeline *planned, const struct image *ima
 	if (lift != NULL)
 		seen = try_to_see(&sight, TRY_SYNC);
 	if (seen != NULL)
-		seen = try_other_cuts(&sight, seen);
+		seen = try_other_ways(&sight, seen);
 	lift_destroy(lift);
 	arena_destroy(arena);
 	return seen;

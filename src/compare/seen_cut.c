@@ -197,7 +197,7 @@ static bool cut_images(struct seeing *seeing, uint32_t ahead)
 		asserted[cell] = lift->asserted[cell % lift->cell_count];
 		states[cell] = lift->states[cell % lift->cell_count];
 	}
-	seeing->inverted = seen_inverted(seeing, asserted, cells);
+	seeing->inverted = seeing->try != TRY_AS_READ ? seen_inverted(seeing, asserted, cells) : 0;
 	for (uint32_t cell = 0; cell < cells && seeing->inverted != 0; cell++)
 		asserted[cell] ^= seeing->inverted;
 	if (seeing->try == TRY_PLANNED_LINES && start == lift->cell_count)

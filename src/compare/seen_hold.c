@@ -74,19 +74,26 @@ static bool plan_cuts(const struct seeing *seeing, size_t before, size_t after)
 	return before != NONE && after != NONE && lines[before].block != lines[after].block;
 }
 
-// Blocks are cut where the type changes and where the plan cuts them, unless rows go on; and where rows begin anew.
+// Whether a line that follows one of its type begins a block: as the plan has it, unless its row says otherwise.
+static bool begins_block(const struct seeing *seeing, size_t line, uint32_t next_row, bool rows_tell)
+{
+	const bool cut = plan_cuts(seeing, seeing->lines[line - 1].planned, seeing->lines[line].planned);
+	if (!rows_tell || row_fits(seeing, line, cut ? 0 : next_row))
+		return cut;
+	return row_fits(seeing, line, cut ? next_row : 0) ? !cut : cut;
+}
+
+// Rows tell nothing where already the first of some lines of a type does not hold what the plan says.
 static void cut_blocks(struct seeing *seeing)
 {
+	bool rows_tell = false;
 	for (size_t index = 0; index < seeing->line_count; index++) {
-		struct seen_line *line = &seeing->lines[index], *before = line - (index > 0);
-		line->begins_block = true;
-		line->row = 0;
-		if (index == 0 || before->type != line->type)
-			continue;
-		const bool cut = plan_cuts(seeing, before->planned, line->planned);
-		const uint32_t next = before->row + 1;
-		line->begins_block = row_fits(seeing, index, cut ? 0 : next) ? cut : row_fits(seeing, index, cut ? next : 0) ? !cut : cut;
+		struct seen_line *line = &seeing->lines[index];
+		const bool goes_on = index > 0 && line[-1].type == line->type;
+		const uint32_t next = goes_on ? line[-1].row + 1 : 0;
+		line->begins_block = !goes_on || begins_block(seeing, index, next, rows_tell);
 		line->row = line->begins_block ? 0 : next;
+		rows_tell = goes_on ? rows_tell : row_fits(seeing, index, 0);
 	}
 }
 

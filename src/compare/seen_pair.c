@@ -5,11 +5,12 @@
 #include "base/arena.h"
 #include "compare/seen_work.h"
 
-// Segments that show the same are the same. Others are one that was changed if they are alike, the more the better, and neither is to be found
-// elsewhere in the other frame.
+// Segments that show the same are the same. One that the plan has nowhere was changed, from one that the images have nowhere if these
+// are alike, the more the better; for want of that, from any that is in its place.
 #define WORTH_SAME 1000u
 #define WORTH_ALIKE 400u
 #define WORTH_UNKNOWN 100u
+#define WORTH_PLACE 1u
 #define MOST_LIKENESSES 65536u // of changed contents that are worked out
 
 // A content, of segments of either frame.
@@ -61,7 +62,7 @@ static uint64_t any_asserted(const uint64_t *asserted, uint32_t cells)
 	return any;
 }
 
-// A line whose sync differs in a quarter of its cells is not the same line changed.
+// A line whose sync differs in a quarter of its cells is the same line changed only if there is none better.
 static uint32_t likeness_of(const struct pairing *pairing, const struct segment *seen, const struct segment *planned)
 {
 	const uint64_t *left = pairing->seeing->images.asserted + seen->first, *right = pairing->seeing->plan.asserted + planned->first;
@@ -76,8 +77,8 @@ static uint32_t likeness_of(const struct pairing *pairing, const struct segment 
 		by_front ? count_differing(left, right, least, sync) : count_differing(left + left_off, right + right_off, least, sync);
 	const uint64_t of = (uint64_t)most * (all != 0 ? count_bits(all) : 1);
 	if (4 * sync_differing > most || 2 * differing > of)
-		return 0;
-	return 1 + (uint32_t)(WORTH_ALIKE * (of - differing) / of);
+		return WORTH_PLACE;
+	return WORTH_PLACE + (uint32_t)(WORTH_ALIKE * (of - differing) / of);
 }
 
 static uint32_t worth_of_segments(const void *context, size_t seen, size_t planned)
@@ -86,10 +87,12 @@ static uint32_t worth_of_segments(const void *context, size_t seen, size_t plann
 	const struct segment *left = &pairing->seeing->images.segments[seen], *right = &pairing->seeing->plan.segments[planned];
 	if (left->content == right->content)
 		return WORTH_SAME;
-	if (pairing->contents[left->content].planned != NONE || pairing->contents[right->content].seen != NONE)
+	if (pairing->contents[left->content].planned != NONE)
 		return 0;
+	if (pairing->contents[right->content].seen != NONE)
+		return WORTH_PLACE;
 	if (pairing->likeness == NULL)
-		return left->cells == right->cells ? WORTH_UNKNOWN : 0;
+		return left->cells == right->cells ? WORTH_UNKNOWN : WORTH_PLACE;
 	uint16_t *known = &pairing->likeness[pairing->contents[left->content].changed * pairing->changed_planned +
 	                                     pairing->contents[right->content].changed];
 	if (*known == 0)

@@ -133,7 +133,8 @@ bool seen_signals(struct seeing *seeing)
 	struct plan *plan = seeing->seen->plan;
 	if (!copy_signals(seeing))
 		return false;
-	for (size_t signal = 0; signal < plan->signal_count && seeing->images.cells == seeing->plan.cells; signal++)
+	const bool may_differ = seeing->images.cells == seeing->plan.cells && seeing->try != TRY_AS_READ;
+	for (size_t signal = 0; may_differ && signal < plan->signal_count; signal++)
 		find_level_and_lead(seeing, signal, &plan->signals[signal]);
 	return true;
 }

@@ -53,6 +53,7 @@ struct named_line {
 enum seen_try {
 	TRY_SYNC,                  // as far before sync as in the line of the plan that one is
 	TRY_CUTS,                  // as far before sync as most lines of the plan
+	TRY_AS_READ,               // the same as the first, with levels and leads of signals as planned
 	TRY_PLANNED_LINES          // as long as the plan's, of a frame that is as long as the plan's
 };
 
