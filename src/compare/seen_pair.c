@@ -16,6 +16,7 @@
 // A content, of segments of either frame.
 struct content {
 	size_t planned, seen;      // a segment of the plan, of the images, that has it; NONE
+	size_t like;               // the segment of the plan that one of the images is: its own, or what such a one was aligned with; NONE
 	size_t changed;            // its number among those that only one of the frames has
 };
 
@@ -109,7 +110,7 @@ static bool list_contents(struct pairing *pairing)
 	if (pairing->contents == NULL)
 		return seen_memory(seeing);
 	for (size_t index = 0; index < pairing->content_count; index++)
-		pairing->contents[index] = (struct content){NONE, NONE, 0};
+		pairing->contents[index] = (struct content){NONE, NONE, NONE, 0};
 	for (size_t index = plan->count; index-- > 0;)
 		pairing->contents[plan->segments[index].content].planned = index;
 	for (size_t index = images->count; index-- > 0;)
@@ -122,6 +123,16 @@ static bool list_contents(struct pairing *pairing)
 			content->changed = pairing->changed_planned++;
 	}
 	return true;
+}
+
+static void find_alike(struct pairing *pairing)
+{
+	const struct seeing *seeing = pairing->seeing;
+	for (size_t index = 0; index < seeing->images.count; index++) {
+		struct content *content = &pairing->contents[seeing->images.segments[index].content];
+		if (content->like == NONE)
+			content->like = content->planned != NONE ? content->planned : seeing->segments.now_of[index];
+	}
 }
 
 static bool align_segments(struct pairing *pairing)
@@ -137,8 +148,10 @@ static bool align_segments(struct pairing *pairing)
 	}
 	if (!alignment_begin(steps, &seeing->segments))
 		return seen_memory(seeing);
-	if (align_lists(steps, worth_of_segments, WORTH_SAME, pairing, &seeing->segments))
+	if (align_lists(steps, worth_of_segments, WORTH_SAME, pairing, &seeing->segments)) {
+		find_alike(pairing);
 		return true;
+	}
 	return steps->failed ? seen_memory(seeing) : seen_refuse(seeing, "the images have too many lines that differ from the plan's");
 }
 
@@ -195,12 +208,12 @@ static void add_line(struct seeing *seeing, uint32_t first, size_t planned, size
 		seeing->lines[seeing->line_count++] = (struct seen_line){.first = first, .planned = planned, .planned_type = planned_type};
 }
 
-// The lines that begin in a segment of the images: those of the segment that it is, or else of one that shows the same.
+// The lines that begin in a segment of the images: those of the segment that it is, or else of what one that shows the same is.
 static void cut_segment(const struct pairing *pairing, const struct boundaries *boundaries, size_t index)
 {
 	struct seeing *seeing = pairing->seeing;
 	const struct segment *seen = &seeing->images.segments[index];
-	const size_t paired = seeing->segments.now_of[index], like = paired != NONE ? paired : pairing->contents[seen->content].planned;
+	const size_t paired = seeing->segments.now_of[index], like = paired != NONE ? paired : pairing->contents[seen->content].like;
 	if (like == NONE) {
 		add_line(seeing, seen->first, NONE, NONE);
 		return;
@@ -219,7 +232,7 @@ static size_t count_lines(const struct pairing *pairing, const struct boundaries
 	size_t count = 0;
 	for (size_t index = 0; index < seeing->images.count; index++) {
 		const size_t paired = seeing->segments.now_of[index];
-		const size_t like = paired != NONE ? paired : pairing->contents[seeing->images.segments[index].content].planned;
+		const size_t like = paired != NONE ? paired : pairing->contents[seeing->images.segments[index].content].like;
 		count += like != NONE ? boundaries->first_of[like + 1] - boundaries->first_of[like] : 1;
 	}
 	return count;
