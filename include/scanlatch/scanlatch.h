@@ -240,7 +240,8 @@ char *scanlatch_images_chip_text(const scanlatch_images *images, size_t chip);
 typedef struct scanlatch_difference scanlatch_difference;
 
 /* Compares two plans (or sets) by meaning, and the images that were proved against them byte by byte. With both proofs of one plan, the images that
- * were read are compared with those that were made. The names are what reports call the two, their last parts. NULL when memory is out. The proofs,
+ * were read are compared with those that were made; where a must fails in them, what they do is read back out of them and compared with the
+ * plan. The names are what reports call the two, their last parts. NULL when memory is out. The proofs,
  * with what they are of, must outlive the difference. */
 scanlatch_difference *scanlatch_compare(const char *old_name, const scanlatch_proofs *old, const char *new_name, const scanlatch_proofs *now);
 void scanlatch_difference_destroy(scanlatch_difference *difference);

@@ -240,6 +240,14 @@ enum rule diagnostics_rule(const struct diagnostics *diagnostics, size_t index)
 	return index < diagnostics->count ? diagnostics->entries[index]->rule : RULE_OUT_OF_MEMORY;
 }
 
+const char *diagnostics_first_error(const struct diagnostics *diagnostics)
+{
+	for (size_t index = 0; index < diagnostics->count; index++)
+		if (rule_row(diagnostics->entries[index]->rule)->severity == SEVERITY_ERROR)
+			return diagnostics->entries[index]->message;
+	return diagnostics->memory_failed ? "memory is out" : NULL;
+}
+
 bool diagnostics_has_system_error(const struct diagnostics *diagnostics)
 {
 	for (size_t index = 0; index < diagnostics->count; index++) {

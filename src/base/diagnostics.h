@@ -53,6 +53,10 @@ size_t diagnostics_count(const struct diagnostics *diagnostics);
 // The rule of diagnostic `index` (0 … count-1 in the order added), for tests.
 enum rule diagnostics_rule(const struct diagnostics *diagnostics, size_t index);
 
+// The message of the first error, without place, hint and rule, for reports that go on without what it refused; NULL if there is
+// none. The diagnostics own it.
+const char *diagnostics_first_error(const struct diagnostics *diagnostics);
+
 // True if any error's rule stands for a refusal of the system (read, write, memory) and not for a bad input.
 bool diagnostics_has_system_error(const struct diagnostics *diagnostics);
 

@@ -3,6 +3,7 @@
 
 #include "base/arena.h"
 #include "catalogue/catalogue.h"
+#include "compare/seen.h"
 #include "library/library.h"
 #include "plan/read.h"
 #include "view/diff.h"
@@ -81,9 +82,49 @@ static bool is_told(const struct side *old, const struct side *now, unsigned ban
 	return false;
 }
 
+// The setting of the jumpers in which a must fails first.
+static unsigned failing_bank(const struct side *read, size_t member)
+{
+	const struct proofs *proofs = read->proofs->proofs[member];
+	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
+		if (proof_is_must(kind) && proofs->proof[kind].verdict == VERDICT_FAIL)
+			return proofs->proof[kind].counterexample.bank;
+	return 0;
+}
+
+// Reads what the images of a member do; where they cannot be read, why. False when memory is out.
+static bool see_images(struct arena *arena, const struct side *read, size_t member, struct plan_difference *plan)
+{
+	const struct timeline *timeline = read->plan->members[member].timeline;
+	const struct machine_plan *machine = &timeline->plan->machine;
+	const struct member_images *images = &read->images->members[member];
+	const struct seen_options options = {
+		.bank = failing_bank(read, member), .has_start = images->has_start, .start = images->start,
+		.start_is_planned = machine->has_start || machine->line.advance == ADVANCE_COUNT,
+		.codes = read->proofs->proofs[member]->codes, .code_counts = read->proofs->proofs[member]->code_counts};
+	struct diagnostics *refusals = diagnostics_create();
+	if (refusals == NULL)
+		return false;
+	plan->seen = seen_create(timeline, read->images->images, options, refusals);
+	const char *why = plan->seen == NULL ? diagnostics_first_error(refusals) : NULL;
+	plan->unseen = why != NULL ? arena_copy(arena, why, strlen(why)) : NULL;
+	const bool good = !diagnostics_has_system_error(refusals) && (why == NULL || plan->unseen != NULL);
+	diagnostics_destroy(refusals);
+	return good;
+}
+
+// Of a plan and images: what the proofs say of these; and where a must fails, they are compared by what they do.
+static bool judge_images(struct arena *arena, const struct side *read, size_t member, bool is_old, struct plan_difference *plan)
+{
+	plan->images = read->proofs->proofs[member];
+	plan->images_musts = is_old ? plan->old_musts : plan->now_musts;
+	return plan->images_musts[0] == '\0' || see_images(arena, read, member, plan);
+}
+
 static bool compare_members(struct arena *arena, const struct side *old, const struct side *now, unsigned bank, struct plan_difference *plan)
 {
 	const size_t before = shown_in(old, bank), after = shown_in(now, bank);
+	const bool alone = old->plan == now->plan, old_was_read = alone && old->images->members[before].table == NULL;
 	*plan = (struct plan_difference){.banks = NULL};
 	if ((old->plan->set != NULL || now->plan->set != NULL) && !list_banks(arena, old, now, bank, plan))
 		return false;
@@ -91,15 +132,13 @@ static bool compare_members(struct arena *arena, const struct side *old, const s
 		plan->only = before == SIZE_MAX ? "new" : "old";
 		return true;
 	}
-	plan->comparison = comparison_create(old->plan->members[before].timeline, now->plan->members[after].timeline);
-	if (plan->comparison == NULL || !name_failures(arena, old, before, now, after, plan))
+	if (!name_failures(arena, old, before, now, after, plan) ||
+	    (alone && !judge_images(arena, old_was_read ? old : now, before, old_was_read, plan)))
 		return false;
-	if (old->plan == now->plan) {
-		const bool old_was_read = old->images->members[before].table == NULL;
-		plan->images = (old_was_read ? old : now)->proofs->proofs[after];
-		plan->images_musts = old_was_read ? plan->old_musts : plan->now_musts;
-	}
-	return true;
+	const struct timeline *seen = plan->seen != NULL ? plan->seen->timeline : NULL;
+	plan->comparison = comparison_create(seen != NULL && old_was_read ? seen : old->plan->members[before].timeline,
+	                                     seen != NULL && !old_was_read ? seen : now->plan->members[after].timeline);
+	return plan->comparison != NULL;
 }
 
 static bool compare_plans(struct scanlatch_difference *result, const struct side *old, const struct side *now)
@@ -218,8 +257,10 @@ void scanlatch_difference_destroy(scanlatch_difference *difference)
 {
 	if (difference == NULL)
 		return;
-	for (size_t index = 0; index < difference->difference.plan_count; index++)
+	for (size_t index = 0; index < difference->difference.plan_count; index++) {
 		comparison_destroy(difference->difference.plans[index].comparison);
+		seen_destroy(difference->difference.plans[index].seen);
+	}
 	arena_destroy(difference->arena);
 }
 

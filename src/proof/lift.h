@@ -11,6 +11,7 @@ struct diagnostics;
 struct lift_options {
 	size_t cut_signal;             // lines begin at its leading edge; SIZE_MAX: at that of composite or horizontal sync
 	bool near;                     // pin the state of every cell
+	bool without_holds;            // look for none
 	uint32_t bank;                 // setting of the bank jumpers
 };
 
@@ -95,5 +96,12 @@ struct lift {
 struct lift *lift_images(const struct plan *board, const struct image *images, struct lift_options options,
                          struct diagnostics *diagnostics);
 void lift_destroy(struct lift *lift);
+
+struct arena;
+
+// The expression in row and col that the bits of the states have over lines whose columns begin at these cells, `width` of each, in the
+// arena; NULL if they have none, or memory is out.
+const char *lift_expression(struct arena *arena, const uint32_t *states, unsigned high, unsigned low, const uint32_t *first_cells,
+                            size_t lines, uint32_t width);
 
 #endif

@@ -8,12 +8,12 @@ static int64_t value_at(const struct grid *grid, uint32_t cell)
 	return grid->states[cell] >> grid->low & grid->mask;
 }
 
-bool grid_start(struct grid *grid, const struct lift *lift, unsigned high, unsigned low, uint32_t first_cell, uint32_t width,
+bool grid_start(struct grid *grid, const uint32_t *states, unsigned high, unsigned low, uint32_t first_cell, uint32_t width,
                 bool by_modulus)
 {
 	const uint32_t mask = low_bits(high - low + 1);
 	const int64_t modulus = by_modulus ? (int64_t)mask + 1 : 0;
-	*grid = (struct grid){.states = lift->states, .low = low, .mask = mask, .first_cell = first_cell, .width = width};
+	*grid = (struct grid){.states = states, .low = low, .mask = mask, .first_cell = first_cell, .width = width};
 	grid->rows = grid->columns = sequence_start(modulus);
 	for (uint32_t column = 0; column < width; column++) {
 		if (!sequence_takes(&grid->columns, value_at(grid, first_cell + column)))
@@ -47,4 +47,20 @@ const char *grid_expression(const struct grid *grid, struct arena *arena)
 		copy = arena_copy(arena, text_string(&text), text.length);
 	text_release(&text);
 	return copy;
+}
+
+const char *lift_expression(struct arena *arena, const uint32_t *states, unsigned high, unsigned low, const uint32_t *first_cells,
+                            size_t lines, uint32_t width)
+{
+	for (unsigned by_modulus = 0; by_modulus < 2; by_modulus++) {
+		struct grid grid;
+		size_t line = 1;
+		if (!grid_start(&grid, states, high, low, first_cells[0], width, by_modulus == 1))
+			continue;
+		while (line < lines && grid_take(&grid, first_cells[line]))
+			line++;
+		if (line == lines)
+			return grid_expression(&grid, arena);
+	}
+	return NULL;
 }

@@ -14,7 +14,7 @@ struct grid {
 };
 
 // Begins with a line whose columns are the cells first_cell …; false if these have no expression.
-bool grid_start(struct grid *grid, const struct lift *lift, unsigned high, unsigned low, uint32_t first_cell, uint32_t width,
+bool grid_start(struct grid *grid, const uint32_t *states, unsigned high, unsigned low, uint32_t first_cell, uint32_t width,
                 bool by_modulus);
 // Whether the line whose columns begin at a cell may follow; then it is taken. Cannot fail.
 bool grid_take(struct grid *grid, uint32_t first_cell);

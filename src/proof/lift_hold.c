@@ -43,7 +43,7 @@ static uint32_t count_parts(const struct lifting *lifting, const struct held_lin
 	uint32_t parts = 0, line = 0;
 	while (line < block->lines) {
 		struct grid grid;
-		if (parts == most || !grid_start(&grid, lifting->lift, field->high, field->low, cell_of(lifting, block->first_line + line, region),
+		if (parts == most || !grid_start(&grid, lifting->lift->states, field->high, field->low, cell_of(lifting, block->first_line + line, region),
 		                                 region->cells, by_modulus))
 			return 0;
 		if (cuts != NULL)
@@ -73,7 +73,7 @@ static bool find_expression(struct lifting *lifting, const struct held_lines *bl
 	*expression = NULL;
 	for (unsigned by_modulus = 0; by_modulus < 2; by_modulus++) {
 		struct grid grid;
-		if (!grid_start(&grid, lifting->lift, field->high, field->low, cell_of(lifting, block->first_line, region), region->cells,
+		if (!grid_start(&grid, lifting->lift->states, field->high, field->low, cell_of(lifting, block->first_line, region), region->cells,
 		                by_modulus == 1))
 			continue;
 		uint32_t line = 1;
@@ -209,7 +209,7 @@ static bool choose_fields(struct lifting *lifting, const struct lift_field **fie
 	if (named == NULL)
 		return lift_memory(lifting);
 	*fields = named;
-	if (machine->line.advance == ADVANCE_COUNT || lifting->lift->options.near)
+	if (machine->line.advance == ADVANCE_COUNT || lifting->lift->options.near || lifting->lift->options.without_holds)
 		return true;
 	for (size_t index = 0; index < machine->field_count; index++)
 		named[(*count)++] = (struct lift_field){machine->fields[index].name, machine->fields[index].high, machine->fields[index].low};

@@ -56,6 +56,10 @@ void put_difference_headline(struct text *out, const struct difference *differen
 	text_put(out, ": ");
 	if (difference->alone) {
 		text_put(out, difference_found(difference) ? "the images do not do what the plan says" : "the images do what the plan says");
+		if (edits > 0) {
+			text_put(out, ", ");
+			text_put_count(out, edits, "change", "changes");
+		}
 	} else {
 		text_put(out, same_timelines(difference) ? "same timeline, " : "another timeline, ");
 		if (edits == 0)
@@ -78,6 +82,19 @@ struct fact musts_fact(const struct plan_difference *plan)
 	if (plan->images != NULL)
 		return (struct fact){"musts in the images", NULL, musts_words(plan->images_musts), false};
 	return (struct fact){"musts", musts_words(plan->old_musts), musts_words(plan->now_musts), strcmp(plan->old_musts, plan->now_musts) == 0};
+}
+
+struct fact unlisted_fact(const struct plan_difference *plan)
+{
+	if (plan->images == NULL || plan->images_musts[0] == '\0' || plan->comparison->edits > 0)
+		return (struct fact){NULL, NULL, NULL, false};
+	return (struct fact){plan->unseen != NULL ? "changes cannot be told" : "changes", NULL,
+	                     plan->unseen != NULL ? plan->unseen : "none in what the images' loop shows and holds", false};
+}
+
+bool tells_facts(const struct plan_difference *plan)
+{
+	return plan->images == NULL || plan->seen != NULL;
 }
 
 struct fact advice_fact(const struct plan_difference *plan)
@@ -171,10 +188,12 @@ static void put_change(struct report *report, const struct comparison *compariso
 // What the machine does: first what matters at the bench.
 static void put_plan_facts(struct report *report, const struct plan_difference *plan)
 {
-	const struct fact musts = musts_fact(plan), advice = advice_fact(plan);
+	const struct fact musts = musts_fact(plan), unlisted = unlisted_fact(plan), advice = advice_fact(plan);
 	const struct comparison *comparison = plan->comparison;
 	put_fact(report, &musts);
-	for (size_t index = 0; plan->images == NULL && index < comparison->fact_count; index++)
+	if (unlisted.what != NULL)
+		put_fact(report, &unlisted);
+	for (size_t index = 0; tells_facts(plan) && index < comparison->fact_count; index++)
 		put_fact(report, &comparison->facts[index]);
 	for (size_t index = 0; index < comparison->count; index++)
 		if (comparison->changes[index].section == CHANGE_LIMITS)
@@ -250,7 +269,7 @@ static void put_plan(struct report *report, const struct plan_difference *plan)
 	if (plan->comparison == NULL || (plan->bank_count > 0 && plan->comparison->edits == 0 && plan->images == NULL))
 		return;
 	if (plan->images == NULL || plan->images_musts[0] != '\0')
-		put_heading(report, plan, plan->images == NULL ? "changes in " : "");
+		put_heading(report, plan, plan->comparison->edits > 0 ? "changes in " : "");
 	put_changes(report, plan->comparison);
 	put_failures(report->out, plan);
 }

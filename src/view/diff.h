@@ -6,6 +6,7 @@
 
 #include "compare/compare.h"
 
+struct seen;
 struct text;
 
 enum chip_fate {
@@ -36,6 +37,8 @@ struct plan_difference {
 	const char *old_advice, *now_advice;
 	const struct proofs *images;   // where a plan is compared with images that were read: their proofs; otherwise NULL
 	const char *images_musts;      // then: of old_musts and now_musts, those of the images
+	struct seen *seen;             // then, where a must fails: what they do, which the comparison has for their side; NULL if it
+	const char *unseen;            // cannot be read out of them: why, in words
 };
 
 struct difference {
@@ -69,6 +72,7 @@ bool view_difference_svg(struct text *out, const struct picture *picture, const 
 // { "old", "new": names, "differs": see difference_found, "same_timeline", "same_bytes": of all images,
 //   "plans": [ { "banks": [numbers] (of sets), "only": "old" or "new" where only that set has the banks; then no further keys
 //                "same_timeline", "musts", "advice": { "old": [names of proofs that fail], "new": […] },
+//                "changes_unknown": why what images do cannot be read out of them, so that their changes are not listed,
 //                "facts": [ { "what": "frame", "colour", "speed of the chips" or "limits", "old", "new": in words, "same" } ],
 //                "changes": [ { "section", "kind", "lines": [names of the line types that it is of; only in section "lines"], "what", "old",
 //                               "new", "also": what goes with it, "cells": later or longer, "ticks": TICKS, exact time shift (_s, _us);
@@ -84,6 +88,8 @@ json_t *view_difference_json(const struct difference *difference);
 void put_difference_headline(struct text *out, const struct difference *difference);
 // Each as a fact: see struct fact. Of a plan and images, `old` is NULL.
 struct fact musts_fact(const struct plan_difference *plan);
+// Of images in which a must fails, if no change is listed: why; otherwise its `what` is NULL.
+struct fact unlisted_fact(const struct plan_difference *plan);
 struct fact advice_fact(const struct plan_difference *plan);
 // "525 lines, as before".
 void text_put_fact_value(struct text *out, const struct fact *fact);
@@ -94,6 +100,8 @@ void put_chip_fate(struct text *out, const struct chip_difference *chip);
 const char *chips_advice(const struct difference *difference);
 // "bank 0", "banks 0, 2 and 3".
 void put_bank_numbers(struct text *out, const struct plan_difference *plan);
+// Whether facts and verdicts are of two machines: of images, if what they do was read out of them.
+bool tells_facts(const struct plan_difference *plan);
 bool same_timelines(const struct difference *difference);
 bool same_images(const struct difference *difference);
 

@@ -105,6 +105,7 @@ static json_t *plan_json(const struct plan_difference *plan)
 	json_put(&object, "same_timeline", json_boolean(plan->comparison->same_timeline));
 	json_put(&object, "musts", both_json(plan->old_musts, plan->now_musts));
 	json_put(&object, "advice", both_json(plan->old_advice, plan->now_advice));
+	put_string(&object, "changes_unknown", plan->unseen);
 	put_comparison(&object, plan->comparison);
 	return object;
 }

@@ -81,10 +81,12 @@ static void put_facts(struct page *page, const struct plan_difference *plan)
 		text_printf(page->out, "Only the %s set has %s.\n\n", plan->only, plan->bank_count == 1 ? "it" : "them");
 		return;
 	}
-	const struct fact musts = musts_fact(plan), advice = advice_fact(plan);
+	const struct fact musts = musts_fact(plan), unlisted = unlisted_fact(plan), advice = advice_fact(plan);
 	begin_table(page, "at the bench", "");
 	put_fact(page, &musts);
-	for (size_t index = 0; plan->images == NULL && index < comparison->fact_count; index++)
+	if (unlisted.what != NULL)
+		put_fact(page, &unlisted);
+	for (size_t index = 0; tells_facts(plan) && index < comparison->fact_count; index++)
 		put_fact(page, &comparison->facts[index]);
 	for (size_t index = 0; index < comparison->count; index++)
 		if (comparison->changes[index].section == CHANGE_LIMITS)

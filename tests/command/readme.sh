@@ -78,7 +78,8 @@ holds "the README moves a burst" eval "$(shell_block 9)"
 holds "diff shows what the README shows" compare 14
 holds "the README builds what was burned" eval "$(shell_block 10)"
 holds "build --near shows what the README shows" compare 15
-same "the README shows fifteen commands" "$(block 16)" ""
+holds "diff of images shows what the README shows" compare 16
+same "the README shows sixteen commands" "$(block 17)" ""
 
 # A block of YAML that is a plan's or a set's own text: each of its lines stands there, but for what a comment says.
 yaml_block() { awk -v wanted="$1" '/^```/ { if (inside) inside = 0; else if ($0 == "```yaml") inside = ++count == wanted; next } inside' "$readme"; }

@@ -80,4 +80,5 @@ def main():
 			print(f"ok {edit} {seed}" if flaw is None else f"FAILED {edit} {seed}: {flaw}")
 
 
-main()
+if __name__ == "__main__":
+	main()

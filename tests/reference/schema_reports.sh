@@ -124,6 +124,12 @@ report forms.diff diff plans/mooring-board.yaml plans/pier-clock.yaml
 report counted.diff diff plans/mooring-board.yaml plans/mooring-board-counted.yaml
 report set.diff diff plans/pilot-station.yaml plans/pilot-station-625.yaml
 report images.diff diff plans/pier-clock.yaml "$work/images/pier-clock"
+# Images of an older plan, and blank ones, in which no lines are to be found.
+sed -E 's/(region: burst, +time: )2.51/\13.07/' plans/ferry-queue.yaml >"$work/plans/burst.yaml"
+report older.diff diff "$work/images/ferry-queue" "$work/plans/burst.yaml"
+mkdir "$work/blank"
+head -c 32768 /dev/zero >"$work/blank/pier-clock.rom0.bin"
+report blank.diff diff "$work/blank" plans/pier-clock.yaml
 sed 's/repeat: 3,/repeat: 4,/' plans/ferry-queue.yaml >"$work/plans/near.yaml"
 report edited.diff diff plans/ferry-queue.yaml "$work/plans/near.yaml"
 report near.build build "$work/plans/near.yaml" --near "$work/images/ferry-queue" -o "$work/images/near"

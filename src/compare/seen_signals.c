@@ -1,0 +1,140 @@
+// Signals that are in all cells the other way round, or all earlier or later, than the plan has them: another active level, another lead.
+#include <string.h>
+
+#include "base/arena.h"
+#include "compare/seen_work.h"
+
+#define MOST_LEAD 16 // cells that a lead is looked for in, and of a line at most a quarter
+#define INVERTED_SHARE 16 // of the cells: more may not be as planned
+
+// How many cells of a circle a signal is asserted in, and how often it begins to be.
+struct duty {
+	uint32_t cells, pulses;
+};
+
+// Of all signals: duties[]. Cells that show the same are counted at once.
+static void count_duties(const uint64_t *asserted, uint32_t cells, size_t signals, struct duty *duties)
+{
+	uint64_t before = asserted[cells - 1];
+	for (uint32_t first = 0, end; first < cells; first = end) {
+		const uint64_t shown = asserted[first];
+		for (end = first + 1; end < cells && asserted[end] == shown;)
+			end++;
+		for (size_t signal = 0; signal < signals; signal++) {
+			if ((shown >> signal & 1) == 0)
+				continue;
+			duties[signal].cells += end - first;
+			duties[signal].pulses += (before >> signal & 1) == 0;
+		}
+		before = shown;
+	}
+}
+
+uint64_t seen_inverted(const struct seeing *seeing, const uint64_t *asserted, uint32_t cells)
+{
+	const struct timeline *planned = seeing->planned;
+	struct duty plan[LIMIT_SIGNALS] = {{0, 0}}, images[LIMIT_SIGNALS] = {{0, 0}};
+	uint64_t inverted = 0;
+	if (cells != planned->cell_count)
+		return 0;
+	count_duties(planned->asserted, cells, planned->plan->signal_count, plan);
+	count_duties(asserted, cells, planned->plan->signal_count, images);
+	for (size_t signal = 0; signal < planned->plan->signal_count; signal++)
+		if (images[signal].cells == cells - plan[signal].cells && images[signal].cells != plan[signal].cells &&
+		    images[signal].pulses == plan[signal].pulses && plan[signal].pulses > 0)
+			inverted |= (uint64_t)1 << signal;
+	return inverted;
+}
+
+// Whether the images show a signal so many cells before the plan's frame does, in every cell.
+static bool leads_by(const struct seeing *seeing, size_t signal, int lead)
+{
+	const uint64_t *planned = seeing->plan.asserted, *seen = seeing->images.asserted;
+	const uint32_t cells = seeing->plan.cells;
+	uint32_t from = (uint32_t)((lead % (int64_t)cells + cells) % cells), cell = 0;
+	while (cell < cells && ((seen[cell] ^ planned[from]) >> signal & 1) == 0) {
+		cell++;
+		from = from + 1 == cells ? 0 : from + 1;
+	}
+	return cell == cells;
+}
+
+// Whether a signal changes in the plan's frame with others somewhere that still change there in the images. One that changes alone, or takes
+// all others with it, is a region that was moved.
+static bool leaves_others(const struct seeing *seeing, uint64_t mask, uint64_t others)
+{
+	const uint64_t *planned = seeing->plan.asserted, *seen = seeing->images.asserted;
+	uint32_t before = seeing->plan.cells - 1;
+	for (uint32_t cell = 0; cell < seeing->plan.cells; cell++) {
+		const uint64_t changed = planned[cell] ^ planned[before], changed_now = seen[cell] ^ seen[before];
+		if ((changed & mask) != 0 && (changed & others) != 0 && (changed & others) == (changed_now & others))
+			return true;
+		before = cell;
+	}
+	return false;
+}
+
+// The nearest lead that explains all cells; 0 if none does, or none is needed.
+static int find_lead(const struct seeing *seeing, size_t signal)
+{
+	if (leads_by(seeing, signal, 0))
+		return 0;
+	const uint32_t quarter = seeing->planned->cell_count / seeing->planned->line_count / 4;
+	for (int lead = 1; lead <= MOST_LEAD && (uint32_t)lead <= quarter; lead++) {
+		if (leads_by(seeing, signal, lead))
+			return lead;
+		if (leads_by(seeing, signal, -lead))
+			return -lead;
+	}
+	return 0;
+}
+
+static bool copy_signals(struct seeing *seeing)
+{
+	struct plan *plan = seeing->seen->plan;
+	struct signal *signals = arena_array(seeing->seen->arena, plan->signal_count, sizeof *signals);
+	if (signals == NULL)
+		return seen_memory(seeing);
+	memcpy(signals, plan->signals, plan->signal_count * sizeof *signals);
+	plan->signals = signals;
+	return true;
+}
+
+// Leaves a signal as it is read if it is not the other way round in nearly all cells.
+static void check_inverted(struct seeing *seeing, uint64_t mask)
+{
+	struct circle *images = &seeing->images;
+	uint32_t other = 0;
+	for (uint32_t cell = 0; cell < images->cells; cell++)
+		other += ((images->asserted[cell] ^ seeing->plan.asserted[cell]) & mask) != 0;
+	if (other <= images->cells / INVERTED_SHARE)
+		return;
+	seeing->inverted &= ~mask;
+	for (uint32_t cell = 0; cell < images->cells; cell++)
+		images->asserted[cell] ^= mask;
+}
+
+static void find_level_and_lead(struct seeing *seeing, size_t index, struct signal *signal)
+{
+	struct circle *images = &seeing->images;
+	const uint64_t mask = (uint64_t)1 << index;
+	const bool may_lead = (mask & (seeing->cut | seeing->stretch | seeing->inverted)) == 0;
+	if ((seeing->inverted & mask) != 0)
+		check_inverted(seeing, mask);
+	const int lead = may_lead && leaves_others(seeing, mask, ~(mask | seeing->stretch)) ? find_lead(seeing, index) : 0;
+	signal->active_high ^= (seeing->inverted & mask) != 0;
+	signal->lead_cells += lead;
+	for (uint32_t cell = 0; lead != 0 && cell < images->cells; cell++)
+		images->asserted[cell] = (images->asserted[cell] & ~mask) | (seeing->plan.asserted[cell] & mask);
+}
+
+bool seen_signals(struct seeing *seeing)
+{
+	struct plan *plan = seeing->seen->plan;
+	if (!copy_signals(seeing))
+		return false;
+	const bool may_differ = seeing->images.cells == seeing->plan.cells && seeing->try != TRY_AS_READ;
+	for (size_t signal = 0; may_differ && signal < plan->signal_count; signal++)
+		find_level_and_lead(seeing, signal, &plan->signals[signal]);
+	return true;
+}
