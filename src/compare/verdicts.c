@@ -98,9 +98,9 @@ static void compare_facts(struct comparing *comparing, const struct proofs *old,
 		const char *what, *absent;
 		void (*put)(struct text *out, const struct proofs *proofs);
 	} kinds[] = {
-		{"colour", "no subcarrier is given", put_colour},
+		{"colour", "no subcarrier", put_colour},
 		{"speed of the chips", "not asked", put_speed},
-		{"limits", "no standard is named", put_limits},
+		{"limits", "no standard", put_limits},
 	};
 	for (size_t kind = 0; kind < sizeof kinds / sizeof *kinds; kind++) {
 		struct text left = {0}, right = {0};

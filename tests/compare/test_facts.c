@@ -84,10 +84,10 @@ static void test_absent(void **state)
 {
 	(void)state;
 	assert_fact(compare(with_clock("master: 10 MHz, subcarrier: 1 MHz"), plain), "colour",
-	            "in step as asked, 64 cycles a line, repeats after 1 line and 1 frame", "no subcarrier is given");
+	            "in step as asked, 64 cycles a line, repeats after 1 line and 1 frame", "no subcarrier");
 	struct compared compared = compare(with_standard("standard: { limits: { horizontal sync width: at least 5.1 us } }\n", "master: 10 MHz"), plain);
 	assert_string_equal(text_string(&compared.words), "standard removed: standard: gone, was own\n");
-	assert_fact(compared, "limits", "0 of 1 kept at monitor grade of the plan's own", "no standard is named");
+	assert_fact(compared, "limits", "0 of 1 kept at monitor grade of the plan's own", "no standard");
 }
 
 #define AT_LEAST(width) "standard: { limits: { horizontal sync width: at least " width " } }\n"
