@@ -9,6 +9,7 @@ struct renaming {
 	size_t *line_of;        // [old line types]: with the new names
 	size_t *path;           // [old line types]: room for one
 	bool *visited;          // [old line types]
+	bool *awaited;          // [old line types]: another one shows now under its name
 	bool found;
 };
 
@@ -25,13 +26,13 @@ static size_t follow(struct renaming *renaming, size_t start)
 			return 0;
 		old = comparing->old_line_of[now];
 		if (old == NONE)
-			return comparing->line_of[start] == NONE ? count : 0;
+			return count;
 		if (renaming->visited[old])
 			return old == start ? count : 0;
 	}
 }
 
-// One alone, whose name and whose place were free, takes no one's name.
+// One alone takes no one's name.
 static void rename_from(struct renaming *renaming, size_t start)
 {
 	const size_t count = renaming->visited[start] ? 0 : follow(renaming, start);
@@ -58,10 +59,26 @@ static bool make_renaming(struct comparing *comparing, struct renaming *renaming
 	renaming->line_of = arena_array(comparing->arena, count, sizeof *renaming->line_of);
 	renaming->path = arena_array(comparing->arena, count, sizeof *renaming->path);
 	renaming->visited = arena_array(comparing->arena, count, sizeof *renaming->visited);
-	comparing->failed = comparing->failed || renaming->line_of == NULL || renaming->path == NULL || renaming->visited == NULL;
-	for (size_t old = 0; !comparing->failed && old < count; old++)
+	renaming->awaited = arena_array(comparing->arena, count, sizeof *renaming->awaited);
+	comparing->failed = comparing->failed || renaming->line_of == NULL || renaming->path == NULL || renaming->visited == NULL ||
+	                    renaming->awaited == NULL;
+	for (size_t old = 0; !comparing->failed && old < count; old++) {
+		const size_t now = renaming->shown_by[old], other = now != NONE ? comparing->old_line_of[now] : NONE;
 		renaming->line_of[old] = comparing->line_of[old];
+		if (other != NONE)
+			renaming->awaited[other] = true;
+	}
 	return !comparing->failed;
+}
+
+static void take(const struct renaming *renaming)
+{
+	struct comparing *comparing = renaming->comparing;
+	for (size_t now = 0; now < comparing->now->line_count; now++)
+		comparing->old_line_of[now] = NONE;
+	for (size_t old = 0; old < comparing->old->line_count; old++)
+		if (renaming->line_of[old] != NONE)
+			pair_lines(comparing, old, renaming->line_of[old]);
 }
 
 void match_renamed(struct comparing *comparing, const size_t *shown_by)
@@ -71,14 +88,11 @@ void match_renamed(struct comparing *comparing, const size_t *shown_by)
 	if (!make_renaming(comparing, &renaming))
 		return;
 	for (size_t old = 0; old < count; old++)
-		if (comparing->line_of[old] == NONE)
+		if (!renaming.awaited[old])
 			rename_from(&renaming, old);
-	for (size_t old = 0; old < count; old++)
+	for (size_t old = 0; old < count; old++) // what is left goes round
 		rename_from(&renaming, old);
 	// In the frame they must stand where they stood: otherwise it is the lines that were edited.
-	if (!renaming.found || agreement(comparing, renaming.line_of) <= agreement(comparing, comparing->line_of))
-		return;
-	for (size_t old = 0; old < count; old++)
-		if (renaming.line_of[old] != NONE)
-			pair_lines(comparing, old, renaming.line_of[old]);
+	if (renaming.found && agreement(comparing, renaming.line_of) > agreement(comparing, comparing->line_of))
+		take(&renaming);
 }

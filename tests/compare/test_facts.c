@@ -186,6 +186,10 @@ static void test_pins(void **state)
 	assert_true(says(&compared, "wiring pin: chip rom0, pin D8: gone, was next.8\n"));
 	assert_false(says(&compared, "pin A13"));
 	forget(&compared);
+	compared = compare(plain, with_machine("state: 14 bits", "part: 28C256, speed: 150 ns"));
+	assert_true(says(&compared, "wiring pin: chip rom0, pin A12: state.12, was open\n"));
+	assert_true(says(&compared, "wiring pin: chip rom0, pin A13: new, state.13\n"));
+	forget(&compared);
 }
 
 int main(void)

@@ -154,6 +154,12 @@ static void test_names_exchanged(void **state)
 	                "frame repeat: block 1, \"b\": 2 lines, was 3 lines\n"
 	                "in words only line-renamed: a line type's name: \"b\", was \"a\"\n"
 	                "in words only line-renamed: a line type's name: \"c\", was \"b\"\n", false, false);
+	assert_compared(compare_clocks("", NAMED("b", Y) NAMED("a", X), BOTH, "", NAMED("a", MARK(9)) NAMED("b", X) NAMED("c", Y),
+	                               "  - { repeat: 1, line: a }\n  - { repeat: 3, line: b }\n  - { repeat: 1, line: c }\n"),
+	                "lines line-added: line type \"a\": new, 9 cells, 90 ticks\n"
+	                "frame block-added: block 1, \"a\": new, 1 line\n"
+	                "in words only line-renamed: a line type's name: \"c\", was \"b\"\n"
+	                "in words only line-renamed: a line type's name: \"b\", was \"a\"\n", false, false);
 	// What shows there has changed: the lines were edited.
 	assert_compared(compare_clocks("", NAMED("a", SYNC(2) GAP(3) LOAD(4)) NAMED("b", SYNC(3) GAP(2) LOAD(4)), BOTH, "",
 	                               NAMED("a", SYNC(3) GAP(2) LOAD(4)) NAMED("b", SYNC(2) GAP(3) LOAD(4)), BOTH),
