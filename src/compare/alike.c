@@ -139,13 +139,14 @@ static void fill_worths(const struct comparing *comparing, const struct lonelies
 		}
 }
 
-// Holding each against each takes a step for each region; false if these are too many.
+// Holding each against each takes a step for each region; false if these are too many. Half of what is left is for the alignments to come.
 static bool take_steps(struct comparing *comparing, const struct lonelies *old, const struct lonelies *now)
 {
-	if (old->regions > comparing->work_left / now->count || now->regions > comparing->work_left / old->count)
+	const size_t most = comparing->work_left / 2;
+	if (old->regions > most / now->count || now->regions > most / old->count)
 		return false;
 	const size_t steps = old->regions * now->count + now->regions * old->count;
-	if (steps > comparing->work_left)
+	if (steps > most)
 		return false;
 	comparing->work_left -= steps;
 	return true;
