@@ -21,7 +21,7 @@ static struct laid draw(struct sketch sketch)
 	            "frame: [ { repeat: 3, line: a } ]\n",
 	            sketch.standard, sketch.clock, sketch.role, sketch.machine, sketch.chips);
 	assert_false(text.failed);
-	const struct laid laid = lay_text(text_string(&text));
+	const struct laid laid = lay_whole(text_string(&text));
 	text_release(&text);
 	return laid;
 }

@@ -25,7 +25,7 @@ struct laid {
 };
 
 // A whole plan; the text is copied.
-static inline struct laid lay_text(const char *text)
+static inline struct laid lay_whole(const char *text)
 {
 	struct laid laid = {.arena = arena_create(), .diagnostics = diagnostics_create()};
 	assert_non_null(laid.arena);
@@ -62,7 +62,7 @@ static inline struct laid lay(const char *clock_keys, const char *lines, const c
 	            "frame:\n%s",
 	            clock_keys, lines, frame);
 	assert_false(text.failed);
-	struct laid laid = lay_text(text_string(&text));
+	struct laid laid = lay_whole(text_string(&text));
 	text_release(&text);
 	return laid;
 }

@@ -8,6 +8,21 @@
 
 enum { SYNC = 1, BLANK = 2, BURST = 4, LATE = 8 };
 
+static struct laid lay_text(const char *text)
+{
+	struct laid laid = {.arena = arena_create(), .diagnostics = diagnostics_create()};
+	assert_non_null(laid.arena);
+	assert_non_null(laid.diagnostics);
+	struct source *source = arena_alloc(laid.arena, sizeof *source);
+	assert_non_null(source);
+	*source = (struct source){"quay.yaml", text, strlen(text)};
+	const struct catalogue *catalogue = catalogue_load(laid.arena, laid.diagnostics);
+	assert_non_null(catalogue);
+	laid.plan = plan_read(source, catalogue, laid.diagnostics);
+	laid.timeline = laid.plan != NULL ? timeline_create(laid.plan, laid.diagnostics) : NULL;
+	return laid;
+}
+
 #define HEAD(clock, standard, signals) \
 	"scanlatch: 1\nname: quay\n" standard \
 	"clock: { master: 1 MHz, cell: 9 ticks, stretch: 3 ticks, subcarrier: master / 4, phase: every line" clock " }\n" \
