@@ -69,9 +69,17 @@ static uint32_t worth_of_blocks(const void *context, size_t old, size_t now)
 	return !same_type(left, right) ? 0 : left->repeat == right->repeat ? 3 : 2;
 }
 
+// Blocks that are gone have a number in the old frame alone; "block" without a word is of the new one.
 static const char *block_words(struct comparing *comparing, const struct plan *plan, const struct run *run)
 {
-	return keep_words(comparing, "block %zu, \"%s\"", run->block + 1, plan->lines[run->own_type].name);
+	return keep_words(comparing, "%sblock %zu, \"%s\"", plan == comparing->old ? "old " : "", run->block + 1, plan->lines[run->own_type].name);
+}
+
+static const char *matched_words(struct comparing *comparing, const struct run *old, const struct run *now)
+{
+	return old->block == now->block ? block_words(comparing, comparing->now, now)
+	                                : keep_words(comparing, "block %zu (old block %zu), \"%s\"", now->block + 1, old->block + 1,
+	                                             comparing->now->lines[now->own_type].name);
 }
 
 static const char *lines_words(struct comparing *comparing, int64_t repeat)
@@ -126,7 +134,7 @@ static void tell_blocks(struct frames *frames)
 		}
 		const struct run *match = &frames->now.list[frames->runs.now_of[old]];
 		if (run->repeat != match->repeat)
-			add_block(comparing, "repeat", block_words(comparing, comparing->now, match), lines_words(comparing, run->repeat),
+			add_block(comparing, "repeat", matched_words(comparing, run, match), lines_words(comparing, run->repeat),
 			          lines_words(comparing, match->repeat));
 	}
 	for (size_t now = 0; now < frames->now.count && !comparing->failed; now++)

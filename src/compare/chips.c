@@ -76,24 +76,38 @@ static void put_part(struct text *out, const struct plan *plan, const struct chi
 		text_printf(out, ", %s stage", stage_name(chip->stage));
 }
 
+// A pin of an old and a new chip; NULL for a part that has no such pin.
 static void compare_pin(struct comparing *comparing, const struct chip *chip, char row, unsigned pin, const char *old, const char *now)
 {
-	if (strcmp(old, now) != 0)
-		add_change(comparing, (struct change){.section = CHANGE_CHIPS, .kind = "pin",
-		                                      .what = keep_words(comparing, "chip %s, pin %c%u", chip->label, row, pin),
-		                                      .old = keep_words(comparing, "%s", strcmp(old, "-") == 0 ? "open" : old),
-		                                      .now = keep_words(comparing, "%s", strcmp(now, "-") == 0 ? "open" : now)});
+	static const char open[] = "-";
+	if (strcmp(old != NULL ? old : open, now != NULL ? now : open) == 0)
+		return;
+	struct change change = {.section = CHANGE_CHIPS, .kind = "pin", .what = keep_words(comparing, "chip %s, pin %c%u", chip->label, row, pin)};
+	if (old != NULL)
+		change.old = keep_words(comparing, "%s", strcmp(old, open) == 0 ? "open" : old);
+	if (now != NULL)
+		change.now = keep_words(comparing, "%s", strcmp(now, open) == 0 ? "open" : now);
+	add_change(comparing, change);
+}
+
+static const char *address_name(const struct chip *chip, unsigned pin, char *into)
+{
+	return pin < chip->part->address_pins ? address_wire_name(chip->address[pin], into) : NULL;
+}
+
+static const char *data_name(const struct plan *plan, const struct chip *chip, unsigned pin, char *into)
+{
+	return pin < chip->part->data_pins ? data_wire_name(plan, chip->data[pin], into) : NULL;
 }
 
 static void compare_pins(struct comparing *comparing, const struct chip *old, const struct chip *now)
 {
 	char left[WIRE_NAME_BYTES], right[WIRE_NAME_BYTES];
 	for (unsigned pin = 0; pin < LIMIT_ADDRESS_PINS; pin++)
-		compare_pin(comparing, now, 'A', pin, address_wire_name(old->address[pin], left), address_wire_name(now->address[pin], right));
+		compare_pin(comparing, now, 'A', pin, address_name(old, pin, left), address_name(now, pin, right));
 	for (unsigned pin = 0; pin < LIMIT_DATA_PINS; pin++)
 		if (!same_data_wire(comparing, old->data[pin], now->data[pin]))
-			compare_pin(comparing, now, 'D', pin, data_wire_name(comparing->old, old->data[pin], left),
-			            data_wire_name(comparing->now, now->data[pin], right));
+			compare_pin(comparing, now, 'D', pin, data_name(comparing->old, old, pin, left), data_name(comparing->now, now, pin, right));
 }
 
 static void compare_chip(struct comparing *comparing, const struct chip *old, const struct chip *now)

@@ -13,8 +13,7 @@ struct left_over {
 	size_t line;
 };
 
-// Whether two line types show the same, cell by cell.
-static bool shows_same(const struct comparing *comparing, size_t old, size_t now)
+bool line_shows_same(const struct comparing *comparing, size_t old, size_t now)
 {
 	const struct laid_line *left = &comparing->old_timeline->types[old], *right = &comparing->now_timeline->types[now];
 	uint64_t seen = 0, mapped = 0;
@@ -50,41 +49,83 @@ static int by_hash(const void *left, const void *right)
 	return first->line < second->line ? -1 : first->line > second->line;
 }
 
-static struct left_over *list_left(struct comparing *comparing, bool is_old, size_t *count)
+// The line types that `open` picks, by what they show.
+static struct left_over *list_left(struct comparing *comparing, bool is_old, const bool *open, size_t *count)
 {
 	const struct plan *plan = is_old ? comparing->old : comparing->now;
 	const struct laid_line *types = is_old ? comparing->old_timeline->types : comparing->now_timeline->types;
-	const size_t *matched = is_old ? comparing->line_of : comparing->old_line_of;
 	struct left_over *list = arena_array(comparing->arena, plan->line_count, sizeof *list);
 	*count = 0;
 	comparing->failed = comparing->failed || list == NULL;
 	for (size_t line = 0; list != NULL && line < plan->line_count; line++)
-		if (matched[line] == NONE)
+		if (open[line])
 			list[(*count)++] = (struct left_over){hash_line(comparing, &types[line], is_old), line};
 	if (list != NULL)
 		qsort(list, *count, sizeof *list, by_hash);
 	return list;
 }
 
-static void pair_lines(struct comparing *comparing, size_t old, size_t now)
+void pair_lines(struct comparing *comparing, size_t old, size_t now)
 {
 	comparing->line_of[old] = now;
 	comparing->old_line_of[now] = old;
 }
 
-// What no name has matched is the same line type if it shows the same.
-static void match_shown(struct comparing *comparing)
+static size_t *no_matches(struct comparing *comparing, size_t count)
 {
-	size_t old_count, now_count;
-	const struct left_over *old = list_left(comparing, true, &old_count), *now = list_left(comparing, false, &now_count);
-	for (size_t left = 0, right = 0; old != NULL && now != NULL && left < old_count && right < now_count;) {
-		if (old[left].hash == now[right].hash && shows_same(comparing, old[left].line, now[right].line))
-			pair_lines(comparing, old[left++].line, now[right++].line);
+	size_t *matches = arena_array(comparing->arena, count, sizeof *matches);
+	comparing->failed = comparing->failed || matches == NULL;
+	for (size_t index = 0; matches != NULL && index < count; index++)
+		matches[index] = NONE;
+	return matches;
+}
+
+// Line types that no name has matched with what shows the same.
+struct open_lines {
+	bool *old, *now;
+};
+
+static bool list_open(struct comparing *comparing, struct open_lines *open)
+{
+	open->old = arena_array(comparing->arena, comparing->old->line_count, sizeof *open->old);
+	open->now = arena_array(comparing->arena, comparing->now->line_count, sizeof *open->now);
+	comparing->failed = comparing->failed || open->old == NULL || open->now == NULL;
+	for (size_t now = 0; !comparing->failed && now < comparing->now->line_count; now++)
+		open->now[now] = comparing->old_line_of[now] == NONE;
+	for (size_t old = 0; !comparing->failed && old < comparing->old->line_count; old++) {
+		const size_t now = comparing->line_of[old];
+		open->old[old] = now == NONE || !line_shows_same(comparing, old, now);
+		if (now != NONE)
+			open->now[now] = open->old[old];
+	}
+	return !comparing->failed;
+}
+
+// For each old line type that is open, a new one of its own that shows the same, or NONE. NULL when memory is out.
+static const size_t *find_shown(struct comparing *comparing)
+{
+	struct open_lines open;
+	size_t old_count = 0, now_count = 0, *shown_by = no_matches(comparing, comparing->old->line_count);
+	if (comparing->failed || !list_open(comparing, &open))
+		return NULL;
+	const struct left_over *old = list_left(comparing, true, open.old, &old_count), *now = list_left(comparing, false, open.now, &now_count);
+	for (size_t left = 0, right = 0; !comparing->failed && left < old_count && right < now_count;) {
+		if (old[left].hash == now[right].hash && line_shows_same(comparing, old[left].line, now[right].line))
+			shown_by[old[left++].line] = now[right++].line;
 		else if (old[left].hash < now[right].hash)
 			left++;
 		else
 			right++;
 	}
+	return comparing->failed ? NULL : shown_by;
+}
+
+// What no name has matched is the same line type if it shows the same.
+static void match_shown(struct comparing *comparing, const size_t *shown_by)
+{
+	for (size_t old = 0; old < comparing->old->line_count; old++)
+		if (comparing->line_of[old] == NONE && shown_by[old] != NONE && comparing->old_line_of[shown_by[old]] == NONE)
+			pair_lines(comparing, old, shown_by[old]);
 }
 
 static void match_named(struct comparing *comparing)
@@ -104,15 +145,6 @@ static void match_named(struct comparing *comparing)
 	}
 }
 
-static size_t *no_matches(struct comparing *comparing, size_t count)
-{
-	size_t *matches = arena_array(comparing->arena, count, sizeof *matches);
-	comparing->failed = comparing->failed || matches == NULL;
-	for (size_t index = 0; matches != NULL && index < count; index++)
-		matches[index] = NONE;
-	return matches;
-}
-
 static bool *used_lines(struct comparing *comparing, const struct plan *plan)
 {
 	bool *used = arena_array(comparing->arena, plan->line_count, sizeof *used);
@@ -122,9 +154,10 @@ static bool *used_lines(struct comparing *comparing, const struct plan *plan)
 	return used;
 }
 
-// By name; what is left over is the same if it shows the same.
+// By name; what is left over is the same if it shows the same, or else is like enough.
 void match_lines(struct comparing *comparing)
 {
+	const size_t *shown_by = NULL;
 	comparing->line_of = no_matches(comparing, comparing->old->line_count);
 	comparing->old_line_of = no_matches(comparing, comparing->now->line_count);
 	comparing->old_used = used_lines(comparing, comparing->old);
@@ -132,7 +165,12 @@ void match_lines(struct comparing *comparing)
 	if (!comparing->failed)
 		match_named(comparing);
 	if (!comparing->failed)
-		match_shown(comparing);
+		shown_by = find_shown(comparing);
+	if (shown_by == NULL)
+		return;
+	match_renamed(comparing, shown_by);
+	match_shown(comparing, shown_by);
+	match_alike(comparing);
 }
 
 // A line type of one plan alone. What the frame does not use changes nothing at the bench.

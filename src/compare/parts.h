@@ -42,8 +42,6 @@ struct change *sorted_changes(struct comparing *comparing);
 void compare_texts(struct comparing *comparing, enum change_section section, const char *what, struct text *old, struct text *now);
 // The same of strings that are kept by others.
 void compare_words(struct comparing *comparing, enum change_section section, const char *what, const char *old, const char *now);
-// Notes what the machine does; nothing if both texts are empty. Takes and releases both.
-void add_fact(struct comparing *comparing, const char *what, struct text *old, struct text *now);
 
 // A text as a string in the arena; releases it. "" when memory is out.
 const char *keep_text(struct comparing *comparing, struct text *text);
@@ -69,7 +67,16 @@ bool alignment_begin(struct comparing *comparing, struct alignment *alignment);
 
 void match_signals(struct comparing *comparing);
 void match_lines(struct comparing *comparing);
+// Takes an old and a new line type for the same.
+void pair_lines(struct comparing *comparing, size_t old, size_t now);
+// Line types that took each other's names, in renamed.c; `shown_by`: for each old one that its name does not match with the same, a new one of its own that
+// shows the same, or NONE.
+void match_renamed(struct comparing *comparing, const size_t *shown_by);
+// Line types that are left over and like enough to be the same, edited: in alike.c.
+void match_alike(struct comparing *comparing);
 void match_fields(struct comparing *comparing);
+// Whether an old and a new line type show the same, cell by cell.
+bool line_shows_same(const struct comparing *comparing, size_t old, size_t now);
 // The old plan's signals in the new one's numbers; signals that are gone are left out.
 uint64_t map_signals(const struct comparing *comparing, uint64_t asserted);
 
@@ -77,6 +84,8 @@ void compare_clock(struct comparing *comparing);
 void compare_standard(struct comparing *comparing);
 void compare_signals(struct comparing *comparing);
 void compare_lines(struct comparing *comparing);
+// What each region of a line type asserts, in the new plan's numbers; `maps`: the line type is the old plan's. In the arena; NULL when memory is out.
+const uint64_t *map_regions(struct comparing *comparing, const struct line_type *line, bool maps);
 // The regions of an old and a new line type that are the same one.
 void compare_regions(struct comparing *comparing, size_t old_line, size_t now_line);
 void compare_blocks(struct comparing *comparing);
@@ -95,6 +104,7 @@ struct line_pair {
 	const struct laid_line *old_laid, *now_laid;
 	size_t old_index, now_index;
 	const uint64_t *mapped;  // [old regions]: what they assert, in the new plan's numbers
+	bool does_same;          // every cell does: what is told of it is words only
 	struct alignment regions;
 };
 

@@ -248,24 +248,36 @@ static void compare_fields(struct comparing *comparing)
 			compare_field(comparing, NULL, &now->fields[index]);
 }
 
+// The same number of another width is the same state.
+static void compare_start(struct comparing *comparing)
+{
+	const struct machine_plan *old = &comparing->old->machine, *now = &comparing->now->machine;
+	struct both both = no_texts();
+	if (old->has_start && now->has_start && old->start == now->start)
+		return;
+	if (old->has_start)
+		text_put_hex(&both.old, old->start, old->line.state_bits);
+	if (now->has_start)
+		text_put_hex(&both.now, now->start, now->line.state_bits);
+	compare_both(comparing, CHANGE_MACHINE, "start", &both);
+}
+
 void compare_machine(struct comparing *comparing)
 {
 	const struct plan *plans[2] = {comparing->old, comparing->now};
-	struct both form = no_texts(), kind = no_texts(), start = no_texts();
+	struct both form = no_texts(), kind = no_texts();
 	for (unsigned side = 0; side < 2; side++) {
 		const struct machine_plan *machine = &plans[side]->machine;
 		text_put(side == 0 ? &form.old : &form.now, machine->form == FORM_LOOP ? "loop" : "line-frame");
 		if (machine->kind_bits > 0)
 			text_put_count(side == 0 ? &kind.old : &kind.now, machine->kind_bits, "bit", "bits");
-		if (machine->has_start)
-			text_put_hex(side == 0 ? &start.old : &start.now, machine->start, machine->line.state_bits);
 	}
 	compare_both(comparing, CHANGE_MACHINE, "form", &form);
 	compare_stage(comparing, STAGE_LINE);
 	compare_stage(comparing, STAGE_FRAME);
 	compare_both(comparing, CHANGE_MACHINE, "kind", &kind);
 	compare_fields(comparing);
-	compare_both(comparing, CHANGE_MACHINE, "start", &start);
+	compare_start(comparing);
 }
 
 // Timing and sweeps.
@@ -298,7 +310,8 @@ static void put_timing(struct text *out, const struct plan *plan, enum timing_pr
 		for (unsigned stage = 0; stage < machine_stages(&plan->machine); stage++) {
 			if (machine_stage(&plan->machine, (enum stage)stage)->advance != ADVANCE_COUNT)
 				continue;
-			text_printf(out, "%s%s stage ", out->length > 0 ? "; " : "", stage_name((enum stage)stage));
+			if (plan->machine.form == FORM_LINE_FRAME)
+				text_printf(out, "%s%s stage ", out->length > 0 ? "; " : "", stage_name((enum stage)stage));
 			put_part_times(out, timing->counter_part[stage], timing->counter_delay_s[stage], &timing->counter_setup_s[stage]);
 		}
 		break;

@@ -25,7 +25,7 @@ static uint32_t worth_of_regions(const void *context, size_t old, size_t now)
 void add_of_line(const struct line_pair *pair, struct change change)
 {
 	const bool used = pair->comparing->old_used[pair->old_index] || pair->comparing->now_used[pair->now_index];
-	change.section = used ? change.section : CHANGE_WORDS;
+	change.section = used && !pair->does_same ? change.section : CHANGE_WORDS;
 	change.lines = &pair->now_line->name;
 	change.line_count = 1;
 	if (!pair->comparing->failed)
@@ -164,14 +164,13 @@ static void compare_holds(const struct line_pair *pair, size_t old)
 			compare_hold(pair, now, now_machine->fields[field].name, NULL, hold_of(after, field));
 }
 
-static void compare_names(const struct line_pair *pair, size_t old)
+static void add_renamed(const struct line_pair *pair, size_t old, size_t now)
 {
 	struct comparing *comparing = pair->comparing;
-	const char *before = pair->old_line->regions[old].name;
-	if (strcmp(before, now_name(pair, old)) != 0)
+	const char *before = pair->old_line->regions[old].name, *after = pair->now_line->regions[now].name;
+	if (strcmp(before, after) != 0)
 		add_of_line(pair, (struct change){.section = CHANGE_WORDS, .kind = "region-renamed", .what = "a region's name",
-		                                  .old = keep_words(comparing, "\"%s\"", before),
-		                                  .now = keep_words(comparing, "\"%s\"", now_name(pair, old))});
+		                                  .old = keep_words(comparing, "\"%s\"", before), .now = keep_words(comparing, "\"%s\"", after)});
 }
 
 static void compare_pair(struct line_pair *pair)
@@ -187,7 +186,7 @@ static void compare_pair(struct line_pair *pair)
 	for (size_t old = 0; old < pair->old_line->region_count && !pair->comparing->failed; old++) {
 		if (pair->regions.now_of[old] == NONE)
 			continue;
-		compare_names(pair, old);
+		add_renamed(pair, old, pair->regions.now_of[old]);
 		compare_asserted(pair, old);
 		compare_holds(pair, old);
 	}
@@ -201,23 +200,85 @@ static bool has_holds(const struct line_type *line)
 	return false;
 }
 
-// Whether a line type that shows the same and holds the same is only described by other regions.
-static bool says_same(const struct line_pair *pair)
+// Whether a line type does the same in every cell; other regions then only say it in other words.
+static bool does_same(const struct line_pair *pair)
 {
 	const struct comparing *comparing = pair->comparing;
-	bool same = pair->old_line->region_count != pair->now_line->region_count && pair->old_laid->cells == pair->now_laid->cells &&
-	            (comparing->same_holds || (!has_holds(pair->old_line) && !has_holds(pair->now_line)));
-	for (uint32_t cell = 0; same && cell < pair->old_laid->cells; cell++)
-		same = map_signals(comparing, pair->old_laid->asserted[cell]) == pair->now_laid->asserted[cell];
-	return same;
+	return (comparing->same_holds || (!has_holds(pair->old_line) && !has_holds(pair->now_line))) &&
+	       line_shows_same(comparing, pair->old_index, pair->now_index);
 }
 
-static const uint64_t *map_regions(struct comparing *comparing, const struct line_type *line)
+// Regions of both lines that are the same cells.
+struct part {
+	size_t old, old_count, now, now_count;
+	uint32_t first_cell, end_cell;
+};
+
+static uint32_t end_of(const struct laid_line *line, size_t region)
+{
+	return line->regions[region].first_cell + line->regions[region].cells;
+}
+
+// The next part, as short as can be.
+static struct part next_part(const struct line_pair *pair, size_t old, size_t now)
+{
+	struct part part = {old, 1, now, 1, pair->old_laid->regions[old].first_cell, 0};
+	uint32_t old_end = end_of(pair->old_laid, old), now_end = end_of(pair->now_laid, now);
+	while (old_end != now_end) {
+		if (old_end < now_end)
+			old_end = end_of(pair->old_laid, old + part.old_count++);
+		else
+			now_end = end_of(pair->now_laid, now + part.now_count++);
+	}
+	part.end_cell = old_end;
+	return part;
+}
+
+#define MOST_NAMES 6u // of regions of one part
+
+static const char *region_names(struct comparing *comparing, const struct line_type *line, size_t first, size_t count)
+{
+	const size_t named = count > MOST_NAMES ? MOST_NAMES - 1 : count;
+	struct text text = {0};
+	for (size_t index = 0; index < named; index++)
+		text_printf(&text, "%s\"%s\"", index == 0 ? "" : index + 1 == count ? " and " : ", ", line->regions[first + index].name);
+	if (named < count)
+		text_printf(&text, " and %zu more", count - named);
+	return keep_text(comparing, &text);
+}
+
+static void tell_part(const struct line_pair *pair, const struct part *part)
+{
+	struct comparing *comparing = pair->comparing;
+	const uint32_t cells = part->end_cell - part->first_cell;
+	if (part->old_count == 1 && part->now_count == 1) {
+		add_renamed(pair, part->old, part->now);
+		return;
+	}
+	add_of_line(pair, (struct change){.section = CHANGE_WORDS, .kind = "regions-divided",
+	                                  .what = keep_words(comparing, "the same %" PRIu32 " cell%s from cell %" PRIu32, cells, cells == 1 ? "" : "s",
+	                                                     part->first_cell),
+	                                  .old = region_names(comparing, pair->old_line, part->old, part->old_count),
+	                                  .now = region_names(comparing, pair->now_line, part->now, part->now_count)});
+}
+
+// Of a line type that does the same with more regions or fewer: which became of which.
+static void tell_divided(const struct line_pair *pair)
+{
+	for (size_t old = 0, now = 0; old < pair->old_line->region_count && now < pair->now_line->region_count && !pair->comparing->failed;) {
+		const struct part part = next_part(pair, old, now);
+		tell_part(pair, &part);
+		old += part.old_count;
+		now += part.now_count;
+	}
+}
+
+const uint64_t *map_regions(struct comparing *comparing, const struct line_type *line, bool maps)
 {
 	uint64_t *mapped = arena_array(comparing->arena, line->region_count, sizeof *mapped);
 	comparing->failed = comparing->failed || mapped == NULL;
 	for (size_t index = 0; mapped != NULL && index < line->region_count; index++)
-		mapped[index] = map_signals(comparing, line->regions[index].assert_mask);
+		mapped[index] = maps ? map_signals(comparing, line->regions[index].assert_mask) : line->regions[index].assert_mask;
 	return mapped;
 }
 
@@ -225,7 +286,7 @@ void compare_regions(struct comparing *comparing, size_t old_line, size_t now_li
 {
 	struct line_pair pair = {.comparing = comparing, .old_line = &comparing->old->lines[old_line], .now_line = &comparing->now->lines[now_line],
 	                         .old_laid = &comparing->old_timeline->types[old_line], .now_laid = &comparing->now_timeline->types[now_line],
-	                         .old_index = old_line, .now_index = now_line, .mapped = map_regions(comparing, &comparing->old->lines[old_line])};
+	                         .old_index = old_line, .now_index = now_line, .mapped = map_regions(comparing, &comparing->old->lines[old_line], true)};
 	pair.regions.old_count = pair.old_line->region_count;
 	pair.regions.now_count = pair.now_line->region_count;
 	if (comparing->failed || !alignment_begin(comparing, &pair.regions))
@@ -234,9 +295,9 @@ void compare_regions(struct comparing *comparing, size_t old_line, size_t now_li
 		add_change(comparing, (struct change){.section = CHANGE_WORDS, .kind = "line-renamed", .what = "a line type's name",
 		                                      .old = keep_words(comparing, "\"%s\"", pair.old_line->name),
 		                                      .now = keep_words(comparing, "\"%s\"", pair.now_line->name)});
-	if (says_same(&pair))
-		add_of_line(&pair, (struct change){.section = CHANGE_WORDS, .kind = "regions-divided",
-		                                   .what = "the same cells are divided into other regions"});
+	pair.does_same = does_same(&pair);
+	if (pair.does_same && pair.old_line->region_count != pair.now_line->region_count)
+		tell_divided(&pair);
 	else
 		compare_pair(&pair);
 }

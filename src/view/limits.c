@@ -26,29 +26,51 @@ static unsigned places_of(enum limit_item item, struct fraction scaled)
 	return limit_item_facts(item)->dimension == DIMENSION_FREQUENCY && size > -100 && size < 100 ? 6 : 3;
 }
 
-static void put_value(struct text *out, enum limit_item item, struct fraction value)
+// More places than usual, where a missed value would otherwise look like its bound.
+#define MOST_PLACES 9u     // that text_put_rounded has
+#define EXACT MOST_PLACES  // more than these: the fraction itself
+
+static void put_scaled(struct text *out, enum limit_item item, struct fraction scaled, unsigned more)
+{
+	const unsigned places = places_of(item, scaled) + more;
+	if (more == EXACT)
+		text_put_fraction(out, scaled);
+	else
+		text_put_rounded(out, scaled, places < MOST_PLACES ? places : MOST_PLACES);
+}
+
+static void put_value_at(struct text *out, enum limit_item item, struct fraction value, unsigned more)
 {
 	struct fraction scaled;
-	const struct limit_item_facts *facts = limit_item_facts(item);
-	if (facts->is_polarity)
+	if (limit_item_facts(item)->is_polarity)
 		put_limit_value(out, item, value);
 	else if (limit_value_in_unit(item, value, &scaled))
-		text_put_rounded(out, scaled, places_of(item, scaled));
+		put_scaled(out, item, scaled, more);
 	else
 		text_put(out, "?");
 }
 
-static void put_interval(struct text *out, enum limit_item item, struct interval values)
+static void put_value(struct text *out, enum limit_item item, struct fraction value)
+{
+	put_value_at(out, item, value, 0);
+}
+
+static void put_interval_at(struct text *out, enum limit_item item, struct interval values, unsigned more)
 {
 	struct text low = {0}, high = {0};
-	put_value(&low, item, values.low);
-	put_value(&high, item, values.high);
+	put_value_at(&low, item, values.low, more);
+	put_value_at(&high, item, values.high, more);
 	text_put(out, text_string(&low));
 	if (strcmp(text_string(&low), text_string(&high)) != 0)
 		text_printf(out, " to %s", text_string(&high));
 	out->failed = out->failed || low.failed || high.failed;
 	text_release(&low);
 	text_release(&high);
+}
+
+static void put_interval(struct text *out, enum limit_item item, struct interval values)
+{
+	put_interval_at(out, item, values, 0);
 }
 
 // The unit of a number that was put as `number`: 1 line, but 2 lines.
@@ -62,24 +84,24 @@ static void put_unit(struct text *out, enum limit_item item, const char *number)
 		text_printf(out, " %.*s", (int)length, unit);
 }
 
-static void put_value_unit(struct text *out, enum limit_item item, struct fraction value)
-{
-	struct text number = {0};
-	put_value(&number, item, value);
-	text_put(out, text_string(&number));
-	put_unit(out, item, text_string(&number));
-	out->failed = out->failed || number.failed;
-	text_release(&number);
-}
-
-static void put_interval_unit(struct text *out, enum limit_item item, struct interval values)
+static void put_interval_unit_at(struct text *out, enum limit_item item, struct interval values, unsigned more)
 {
 	struct text numbers = {0};
-	put_interval(&numbers, item, values);
+	put_interval_at(&numbers, item, values, more);
 	text_put(out, text_string(&numbers));
 	put_unit(out, item, text_string(&numbers));
 	out->failed = out->failed || numbers.failed;
 	text_release(&numbers);
+}
+
+static void put_interval_unit(struct text *out, enum limit_item item, struct interval values)
+{
+	put_interval_unit_at(out, item, values, 0);
+}
+
+static void put_value_unit(struct text *out, enum limit_item item, struct fraction value)
+{
+	put_interval_unit(out, item, (struct interval){value, value});
 }
 
 // The table.
@@ -345,16 +367,17 @@ bool limit_is_missed(const struct proofs *proofs, enum limit_item item)
 	return verdict->known && verdict->judgement.binds && !verdict->judgement.kept;
 }
 
-static void put_allowed(struct text *out, const struct limit *limit)
+static void put_allowed(struct text *out, const struct limit *limit, unsigned more)
 {
 	const bool range = limit->has_low && limit->has_high && fraction_compare(limit->low, limit->high) != 0;
+	const struct fraction last = limit->has_high ? limit->high : limit->low;
 	if (!limit->has_low || !limit->has_high)
 		text_put(out, limit->has_low ? "at least " : "at most ");
 	if (range) {
-		put_value(out, limit->item, limit->low);
+		put_value_at(out, limit->item, limit->low, more);
 		text_put(out, " to ");
 	}
-	put_value_unit(out, limit->item, limit->has_high ? limit->high : limit->low);
+	put_interval_unit_at(out, limit->item, (struct interval){last, last}, more);
 }
 
 // Whether what was measured is too low, rather than too high; of both, whichever is worse.
@@ -367,12 +390,54 @@ static bool is_too_low(const struct proofs *proofs, const struct limit *limit)
 }
 
 // Where an exact clock would keep the limit: what misses it is the accuracy.
-static void put_accuracy(struct text *out, const struct proofs *proofs, const struct limit *limit)
+static bool accuracy_misses(const struct proofs *proofs, const struct limit *limit)
 {
 	const struct limit_row *row = &proofs->limits.rows[limit->item];
-	if (!row->widened || !limit_judge(limit, proofs->limits.measurement->items[limit->item].values).kept)
+	return row->widened && !row->grades[limit->grade].judgement.kept &&
+	       limit_judge(limit, proofs->limits.measurement->items[limit->item].values).kept;
+}
+
+static bool looks_same(enum limit_item item, struct fraction left, struct fraction right, unsigned more)
+{
+	struct text first = {0}, second = {0};
+	put_value_at(&first, item, left, more);
+	put_value_at(&second, item, right, more);
+	const bool same = !first.failed && !second.failed && strcmp(text_string(&first), text_string(&second)) == 0;
+	text_release(&first);
+	text_release(&second);
+	return same;
+}
+
+// How many places more than usual a value outside its limit needs, so as not to look like the bound: at most EXACT.
+static unsigned more_places(const struct limit *limit, struct interval values)
+{
+	const bool low = limit->has_low && fraction_compare(values.low, limit->low) < 0;
+	const bool high = limit->has_high && fraction_compare(values.high, limit->high) > 0;
+	unsigned more = 0;
+	while (more < EXACT && ((low && looks_same(limit->item, values.low, limit->low, more)) ||
+	                        (high && looks_same(limit->item, values.high, limit->high, more))))
+		more++;
+	return more;
+}
+
+// What was measured, with as many places as tell it from what is allowed. `widened`: also with the accuracy, if it is that which misses.
+// Sets *more to the places that what is allowed needs.
+static void put_told_apart(struct text *out, const struct proofs *proofs, const struct limit *limit, bool widened, unsigned *more)
+{
+	const struct limit_row *row = &proofs->limits.rows[limit->item];
+	const struct interval measured = proofs->limits.measurement->items[limit->item].values;
+	const bool accuracy = accuracy_misses(proofs, limit);
+	*more = more_places(limit, widened && accuracy ? row->values : measured);
+	put_interval_unit_at(out, limit->item, measured, *more);
+	if (accuracy)
+		text_put(out, " by an exact clock");
+	if (!accuracy || !widened)
 		return;
-	text_put(out, " by an exact clock");
+	text_put(out, ", ");
+	put_interval_at(out, limit->item, row->values, *more);
+	text_put(out, " at ");
+	text_put_fraction(out, plan_of(proofs)->clock.accuracy_ppm);
+	text_put(out, " ppm");
 }
 
 static void put_miss_by(struct text *out, const struct proofs *proofs, const struct limit *limit)
@@ -390,9 +455,11 @@ static void put_miss_by(struct text *out, const struct proofs *proofs, const str
 
 void put_limit_measured(struct text *out, const struct proofs *proofs, enum limit_item item)
 {
-	put_interval_unit(out, item, proofs->limits.measurement->items[item].values);
+	const struct limit *limit = limit_at(proofs, item, plan_of(proofs)->grade);
+	unsigned more;
+	put_told_apart(out, proofs, limit, true, &more);
 	text_put(out, ", allowed ");
-	put_allowed(out, limit_at(proofs, item, plan_of(proofs)->grade));
+	put_allowed(out, limit, more);
 }
 
 void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_item item)
@@ -400,11 +467,11 @@ void put_limit_miss(struct text *out, const struct proofs *proofs, enum limit_it
 	const struct limit *limit = limit_at(proofs, item, plan_of(proofs)->grade);
 	const struct measured *measured = &proofs->limits.measurement->items[item];
 	const uint32_t cell = is_too_low(proofs, limit) ? measured->low_at.from_cell : measured->high_at.from_cell;
+	unsigned more;
 	text_printf(out, "%s is ", limit_item_facts(item)->name);
-	put_interval_unit(out, item, measured->values);
-	put_accuracy(out, proofs, limit);
+	put_told_apart(out, proofs, limit, false, &more);
 	text_put(out, ", allowed ");
-	put_allowed(out, limit);
+	put_allowed(out, limit, more);
 	put_miss_by(out, proofs, limit);
 	if (cell == UINT32_MAX || item == ITEM_PIXEL_CLOCK || item == ITEM_SUBCARRIER)
 		return;

@@ -39,7 +39,8 @@ void put_limits_figures(struct text *out, const struct proofs *proofs);
 // True if a limit that binds is missed at the plan's grade. Cannot fail.
 bool limit_is_missed(const struct proofs *proofs, enum limit_item item);
 
-// Puts what was measured of a limit that was judged at the plan's grade, and what is allowed: "4.19 us, allowed 4.4 to 5 us".
+// Puts what was measured of a limit that was judged at the plan's grade, and what is allowed: "4.19 us, allowed 4.4 to 5 us". Where it is missed by the
+// clock's accuracy alone, also what it comes to with that; and as many places as tell what misses from the bound.
 void put_limit_measured(struct text *out, const struct proofs *proofs, enum limit_item item);
 
 // Puts a missed limit, in words, without line breaks: measured, allowed, where.

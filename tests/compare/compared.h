@@ -23,18 +23,22 @@ static inline void put_words(struct compared *compared)
 	assert_false(compared->words.failed);
 }
 
-// Plans of laid.h: their clock's further keys, lines and frames.
-static inline struct compared compare_clocks(const char *old_clock, const char *old_lines, const char *old_frame, const char *now_clock,
-                                             const char *now_lines, const char *now_frame)
+static inline struct compared compare_laid(struct laid old, struct laid now)
 {
-	struct compared compared = {.old = lay(old_clock, old_lines, old_frame), .now = lay(now_clock, now_lines, now_frame),
-	                            .words = {0}};
+	struct compared compared = {.old = old, .now = now, .words = {0}};
 	assert_laid(&compared.old);
 	assert_laid(&compared.now);
 	compared.comparison = comparison_create(compared.old.timeline, compared.now.timeline);
 	assert_non_null(compared.comparison);
 	put_words(&compared);
 	return compared;
+}
+
+// Plans of laid.h: their clock's further keys, lines and frames.
+static inline struct compared compare_clocks(const char *old_clock, const char *old_lines, const char *old_frame, const char *now_clock,
+                                             const char *now_lines, const char *now_frame)
+{
+	return compare_laid(lay(old_clock, old_lines, old_frame), lay(now_clock, now_lines, now_frame));
 }
 
 static inline void forget(struct compared *compared)

@@ -17,17 +17,17 @@ static void test_repeats(void **state)
 	frames("  - { repeat: 3, line: a }\n  - { repeat: 1, line: b }\n", "  - { repeat: 4, line: a }\n  - { repeat: 1, line: b }\n",
 	       "frame repeat: block 1, \"a\": 4 lines, was 3 lines\n", false);
 	frames("  - { repeat: 3, line: a }\n", "  - { repeat: 1, line: a }\n  - { repeat: 2, line: a }\n", "", true);
-	// Blocks are named by their number in the new plan, joined or not.
+	// Blocks are named by their number in the new plan, joined or not, and where it is another, that in the old one too.
 	frames("  - { repeat: 3, line: a }\n  - { repeat: 2, line: b }\n",
 	       "  - { repeat: 1, line: a }\n  - { repeat: 2, line: a }\n  - { repeat: 1, line: b }\n",
-	       "frame repeat: block 3, \"b\": 1 line, was 2 lines\n", false);
+	       "frame repeat: block 3 (old block 2), \"b\": 1 line, was 2 lines\n", false);
 }
 
 static void test_come_and_go(void **state)
 {
 	(void)state;
 	frames("  - { repeat: 3, line: a }\n  - { repeat: 2, line: b }\n", "  - { repeat: 3, line: a }\n",
-	       "frame block-removed: block 2, \"b\": gone, was 2 lines\n", false);
+	       "frame block-removed: old block 2, \"b\": gone, was 2 lines\n", false);
 	frames("  - { repeat: 3, line: a }\n", "  - { repeat: 1, line: b }\n  - { repeat: 3, line: a }\n",
 	       "frame block-added: block 1, \"b\": new, 1 line\n", false);
 	frames("  - { repeat: 3, line: a }\n  - { repeat: 2, line: b }\n  - { repeat: 1, line: c }\n",

@@ -24,28 +24,15 @@ struct laid {
 	struct timeline *timeline; // NULL if the plan could not be read or laid out
 };
 
-// A plan whose cells are 10 ticks of 10 MHz, 1 us, stretched by 4 ticks; `lines` and `frame` are the bodies of those keys.
-static inline struct laid lay(const char *clock_keys, const char *lines, const char *frame)
+// A whole plan; the text is copied.
+static inline struct laid lay_whole(const char *text)
 {
 	struct laid laid = {.arena = arena_create(), .diagnostics = diagnostics_create()};
 	assert_non_null(laid.arena);
 	assert_non_null(laid.diagnostics);
-	const char *text = arena_format(laid.arena,
-	                                "scanlatch: 1\n"
-	                                "name: quay\n"
-	                                "clock: { master: 10 MHz, cell: 10 ticks, stretch: 4 ticks%s }\n"
-	                                "signals:\n"
-	                                "  sync: { role: composite sync, active: low }\n"
-	                                "  late: { role: stretch, active: high }\n"
-	                                "  load: { role: plain, active: high, lead: 1 cell }\n"
-	                                "  mark: { role: plain, active: high, lead: -2 cells }\n"
-	                                "machine: { form: loop, state: 12 bits, fields: { at: 5..0, all: 11..0, top: 11..4 } }\n"
-	                                "chips: { part: 28C64, speed: 150 ns }\n"
-	                                "lines:\n%s"
-	                                "frame:\n%s",
-	                                clock_keys, lines, frame);
-	assert_non_null(text);
-	laid.source = (struct source){"quay.yaml", text, strlen(text)};
+	const char *copy = arena_copy(laid.arena, text, strlen(text));
+	assert_non_null(copy);
+	laid.source = (struct source){"quay.yaml", copy, strlen(copy)};
 	struct source *source = arena_alloc(laid.arena, sizeof *source);
 	assert_non_null(source);
 	*source = laid.source;
@@ -53,6 +40,30 @@ static inline struct laid lay(const char *clock_keys, const char *lines, const c
 	assert_non_null(catalogue);
 	laid.plan = plan_read(source, catalogue, laid.diagnostics);
 	laid.timeline = laid.plan != NULL ? timeline_create(laid.plan, laid.diagnostics) : NULL;
+	return laid;
+}
+
+// A plan whose cells are 10 ticks of 10 MHz, 1 us, stretched by 4 ticks; `lines` and `frame` are the bodies of those keys.
+static inline struct laid lay(const char *clock_keys, const char *lines, const char *frame)
+{
+	struct text text = {0};
+	text_printf(&text,
+	            "scanlatch: 1\n"
+	            "name: quay\n"
+	            "clock: { master: 10 MHz, cell: 10 ticks, stretch: 4 ticks%s }\n"
+	            "signals:\n"
+	            "  sync: { role: composite sync, active: low }\n"
+	            "  late: { role: stretch, active: high }\n"
+	            "  load: { role: plain, active: high, lead: 1 cell }\n"
+	            "  mark: { role: plain, active: high, lead: -2 cells }\n"
+	            "machine: { form: loop, state: 12 bits, fields: { at: 5..0, all: 11..0, top: 11..4 } }\n"
+	            "chips: { part: 28C64, speed: 150 ns }\n"
+	            "lines:\n%s"
+	            "frame:\n%s",
+	            clock_keys, lines, frame);
+	assert_false(text.failed);
+	struct laid laid = lay_whole(text_string(&text));
+	text_release(&text);
 	return laid;
 }
 

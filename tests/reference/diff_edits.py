@@ -142,6 +142,30 @@ def region_renamed(plan, chance):
 	return [change("region-renamed", "a region's name", section="in words only", lines=[line["name"]], old=f'"{old}"', new='"renamed"')]
 
 
+def region_divided(plan, chance):
+	"""The same cells in more regions: words, which say what became of which."""
+	line = pick_line(plan, chance)
+	places = [index for index, each in enumerate(line["regions"]) if each["cells"] > 1 and not each["stretch"] and not each["holds"]]
+	place = chance.choice(places)
+	each, first = line["regions"][place], sum(each["cells"] for each in line["regions"][:place])
+	cells = each["cells"]
+	each["cells"] -= 1
+	line["regions"].insert(place + 1, region("far end", 1, *each["asserts"]))
+	return [change("regions-divided", f"the same {cells} cells from cell {first}", section="in words only", lines=[line["name"]],
+		old=f'"{each["name"]}"', new=f'"{each["name"]}" and "far end"')]
+
+
+def edge_unseen(plan, chance):
+	"""In the border, picture and front porch show the same: there the edge is only said."""
+	for name in ("picture", "border"):
+		before, after = line_of(plan, name)["regions"][4:6]
+		before["cells"] -= 1
+		after["cells"] += 1
+	what = 'edge between "picture" and "front porch"'
+	return [change("edge-moved", what, lines=["picture"], **shift(plan, -1)),
+		change("edge-moved", what, section="in words only", lines=["border"], **shift(plan, -1))]
+
+
 def signal_asserted(plan, chance):
 	line = pick_line(plan, chance, ("picture", "border"))
 	each = chance.choice(line["regions"][1:4])
@@ -268,7 +292,7 @@ def block_added(plan, chance):
 
 def block_removed(plan, chance):
 	repeat = plan["frame"].pop(1)[0]
-	return [change("block-removed", 'block 2, "border"', section="frame", old=f"{repeat} lines")]
+	return [change("block-removed", 'old block 2, "border"', section="frame", old=f"{repeat} lines")]
 
 
 def block_moved(plan, chance):
@@ -324,7 +348,7 @@ def line_removed(plan, chance):
 	plan["lines"].remove(line)
 	plan["frame"].pop(0)
 	return [change("line-removed", 'line type "vertical"', old=line_facts(plan, line)),
-		change("block-removed", 'block 1, "vertical"', section="frame", old="3 lines")]
+		change("block-removed", 'old block 1, "vertical"', section="frame", old="3 lines")]
 
 
 def line_renamed(plan, chance):
@@ -333,6 +357,35 @@ def line_renamed(plan, chance):
 	for block in plan["frame"]:
 		block[1] = "other" if block[1] == old else block[1]
 	return [change("line-renamed", "a line type's name", section="in words only", old=f'"{old}"', new='"other"')]
+
+
+def line_renamed_and_edited(plan, chance):
+	"""One moved edge in a line type with another name is one change beside the name."""
+	line = pick_line(plan, chance)
+	old, line["name"] = line["name"], "other"
+	for block in plan["frame"]:
+		block[1] = "other" if block[1] == old else block[1]
+	line["regions"][0]["cells"] -= 1
+	line["regions"][1]["cells"] += 1
+	names = [each["name"] for each in line["regions"]]
+	return [change("line-renamed", "a line type's name", section="in words only", old=f'"{old}"', new='"other"'),
+		change("edge-moved", f'edge between "{names[0]}" and "{names[1]}"', lines=["other"], **shift(plan, -1))]
+
+
+def renamed_lines(plan, names):
+	for line in plan["lines"]:
+		line["name"] = names.get(line["name"], line["name"])
+	for block in plan["frame"]:
+		block[1] = names.get(block[1], block[1])
+	return [change("line-renamed", "a line type's name", section="in words only", old=f'"{old}"', new=f'"{new}"') for old, new in names.items()]
+
+
+def line_names_swapped(plan, chance):
+	return renamed_lines(plan, {"border": "vertical", "vertical": "border"})
+
+
+def line_names_passed_on(plan, chance):
+	return renamed_lines(plan, {"border": "vertical", "vertical": "picture", "picture": "other"})
 
 
 def clock_value(key, what, value, new, kind="changed"):
@@ -508,6 +561,8 @@ EDITS = {
 	"hold-changed": hold_changed, "hold-removed": hold_removed, "block-repeat": block_repeat, "block-added": block_added,
 	"block-removed": block_removed, "block-moved": block_moved, "block-split": block_split, "line-added": line_added,
 	"line-added-unused": line_added_unused, "line-removed": line_removed, "line-renamed": line_renamed,
+	"line-renamed-and-edited": line_renamed_and_edited, "line-names-swapped": line_names_swapped,
+	"line-names-passed-on": line_names_passed_on, "region-divided": region_divided, "edge-unseen": edge_unseen,
 	"clock-master": clock_value("master", "master clock", lambda _: Fraction(14400000), lambda _: "14400000 Hz (14.4 MHz)"),
 	"clock-accuracy": clock_value("accuracy", "accuracy", lambda _: Fraction(30), lambda _: "30 ppm"),
 	"clock-cell": clock_value("cell", "cell", lambda old: old + 1, lambda new: f"{new} ticks"),

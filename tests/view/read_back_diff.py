@@ -155,11 +155,14 @@ def shown(plan, line):
 
 
 def differing(plans):
-	"""Line types of one name that both frames have and that differ. Signals are the same in order, whatever their names."""
+	"""Line types of one name that both frames have and that differ; but not what only took the name of another. Signals are the same in
+	order, whatever their names."""
 	names = [{line.name for line, _, _ in plan.lines} for plan in plans]
 	signals = [[(signal.active_low, signal.lead) for signal in plan.signals] for plan in plans]
 	everything = signals[0] != signals[1] or not same_clock(*plans)
-	return {name for name in names[0] & names[1] if everything or shown(plans[0], name) != shown(plans[1], name)}
+	before = [(name, shown(plans[0], name)) for name in names[0]]
+	renamed = {name for name in names[1] for other, lines in before if other != name and lines == shown(plans[1], name)}
+	return {name for name in names[0] & names[1] if everything or shown(plans[0], name) != shown(plans[1], name)} - renamed
 
 
 def check_pair(program, paths):
