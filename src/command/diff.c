@@ -93,7 +93,6 @@ static bool side_read_folder(struct side *side, const struct side *other, const 
 	side->images = scanlatch_images_create(other->plan);
 	if (side->images == NULL)
 		return false;
-	scanlatch_images_begin_as(side->images, other->images);
 	if (scanlatch_images_read_folder(side->images, path, messages))
 		return side_prove(side);
 	scanlatch_images_destroy(side->images);
