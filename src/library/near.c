@@ -208,12 +208,25 @@ static bool walk_member(const struct nearing *nearing, size_t index, struct old_
 	return true;
 }
 
-static size_t count_changed(const struct nearing *nearing, const scanlatch_images *images)
+// What there is to burn. A chip that keeps its bytes stays in its socket, so chips count before bytes.
+struct change {
+	size_t chips, bytes;
+};
+
+static struct change count_change(const struct nearing *nearing, const scanlatch_images *images)
 {
-	size_t changed = 0;
-	for (size_t chip = 0; chip < scanlatch_plan_chips(nearing->plan); chip++)
-		changed += scanlatch_images_differing(nearing->old, images, chip);
-	return changed;
+	struct change change = {0, 0};
+	for (size_t chip = 0; chip < scanlatch_plan_chips(nearing->plan); chip++) {
+		const size_t bytes = scanlatch_images_differing(nearing->old, images, chip);
+		change.chips += bytes > 0;
+		change.bytes += bytes;
+	}
+	return change;
+}
+
+static bool is_less(struct change change, struct change other)
+{
+	return change.chips != other.chips ? change.chips < other.chips : change.bytes < other.bytes;
 }
 
 // Makes images with cells matched in one way. NULL if that does not go (plans of a set may come to different codes), or if memory is out, which
@@ -247,33 +260,47 @@ static bool try_way(const struct nearing *nearing, const struct old_frame *frame
 	return good || report_memory(nearing);
 }
 
-// Of the images so far and others, NULL if there are none, those in which fewer bytes change; the others are given up.
-static scanlatch_images *nearer(const struct nearing *nearing, scanlatch_images *best, scanlatch_images *other)
+// The nearest images so far.
+struct nearest {
+	scanlatch_images *images; // NULL: none yet
+	struct change change;
+};
+
+static bool is_same(const struct nearest *nearest)
+{
+	return nearest->images != NULL && nearest->change.bytes == 0;
+}
+
+// Keeps others, NULL if there are none, if less changes in them; else they are given up.
+static void keep_nearer(const struct nearing *nearing, struct nearest *nearest, scanlatch_images *other)
 {
 	if (other == NULL)
-		return best;
-	const bool better = best == NULL || count_changed(nearing, other) < count_changed(nearing, best);
-	scanlatch_images_destroy(better ? best : other);
-	return better ? other : best;
+		return;
+	const struct change change = count_change(nearing, other);
+	const bool better = nearest->images == NULL || is_less(change, nearest->change);
+	scanlatch_images_destroy(better ? nearest->images : other);
+	if (better)
+		*nearest = (struct nearest){other, change};
 }
 
 // Tries all ways to match cells, and, last, to keep nothing.
 static scanlatch_images *make_nearest(const struct nearing *nearing, const struct old_frame *frames)
 {
-	scanlatch_images *best = NULL, *images;
+	struct nearest nearest = {.images = NULL};
+	scanlatch_images *images;
 	bool good = true;
-	for (unsigned way = 0; good && way < NEAR_WAYS && (best == NULL || count_changed(nearing, best) > 0); way++) {
+	for (unsigned way = 0; good && way < NEAR_WAYS && !is_same(&nearest); way++) {
 		good = try_way(nearing, frames, (enum near_way)way, &images);
-		best = nearer(nearing, best, images);
+		keep_nearer(nearing, &nearest, images);
 	}
-	if (good && (best == NULL || count_changed(nearing, best) > 0)) {
+	if (good && !is_same(&nearest)) {
 		images = images_make(nearing->plan, NULL, nearing->messages);
 		good = images != NULL;
-		best = nearer(nearing, best, images);
+		keep_nearer(nearing, &nearest, images);
 	}
 	if (good)
-		return best;
-	scanlatch_images_destroy(best);
+		return nearest.images;
+	scanlatch_images_destroy(nearest.images);
 	return NULL;
 }
 

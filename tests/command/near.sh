@@ -63,6 +63,18 @@ edit 700 tide-board-60 tide-fewer 's/repeat: 18/repeat: 17/'
 # Data signals that move change the chip alone that has them.
 edit 1036 tide-board-60 tide-edge 's/(region: breezeway, +cells: )1/\12/'
 holds 'an edge: two chips keep their bytes' test "$(grep -c 'rom[01]: keeps its bytes; 0 without' counts)" -eq 2
+# One chip to burn, though in three fewer bytes might change: only what the third one says has changed.
+one_chip() {
+	edit 131072 "$@"
+	same "$2: chips to burn" 1 "$(grep -c ' bytes change;' counts)"
+	same "$2: the others keep their bytes" 2 "$(grep -c 'rom[01]: keeps its bytes; 0 without --near$' counts)"
+}
+one_chip tide-board-60 tide-burst-low '/^  burst: /s/high/low/'
+one_chip tide-board-60 tide-blank-low '/^  blank: /s/high/low/'
+one_chip tide-board-60 tide-sync-high '/^  sync: /s/low/high/'
+one_chip tide-board-60 tide-direct 's/outputs: registered/outputs: direct/'
+one_chip tide-board-60 tide-porch '1,/region: front porch/s/(region: front porch, +cells: )2/\13/'
+one_chip tide-board-60 tide-short-porch '1,/region: front porch/s/(region: front porch, +cells: )2/\11/'
 edit 3200 tide-board-60 tide-longer 's/cells: 101/cells: 102/; s/stretch: auto/stretch: 1/; s/phase: every line/phase: free/'
 edit 600 tide-board-50 board-more 's/repeat: 37/repeat: 38/'
 edit 400 ferry-queue ferry-more 's/repeat: 3,/repeat: 4,/'
