@@ -175,9 +175,19 @@ build 0 moved.yaml --near wired -o out
 holds 'a signal on another pin: U4 keeps its bytes' grep -q '^  U4: keeps its bytes' stdout
 
 # What is not there.
-build 2 tide-board-60.yaml --near nowhere -o none
-holds 'no folder' grep -q '\[image-missing\]$' stderr
+build 3 tide-board-60.yaml --near nowhere -o none
+same 'no folder: said once' 'nowhere: error: cannot read a folder of images: No such file or directory [file-unreadable]' "$(cat stderr)"
+build 3 tide-board-60.yaml --near tide-board-60.yaml -o none
+same 'a file: said once' 'tide-board-60.yaml: error: cannot read a folder of images: Not a directory [file-unreadable]' "$(cat stderr)"
 build 2 pier-clock.yaml --near old/tide-board-60 -o none
+holds 'of another plan: what is there' grep -Fqx '  hint: the folder old/tide-board-60 has neither pier-clock.rom0.bin nor pier-clock.rom0.hex; it has tide-board-60.rom0.bin, tide-board-60.rom1.bin, tide-board-60.rom2.bin' stderr
+sed 's/label: U4/label: U5/' lock-gate-sign.yaml >label.yaml
+build 2 label.yaml --near old/lock-gate-sign -o none
+holds 'another label: what is there' grep -Fqx '  hint: the folder old/lock-gate-sign has neither lock-gate-sign.U5.bin nor lock-gate-sign.U5.hex; it has lock-gate-sign.U4.bin' stderr
+mkdir many
+touch many/tide-board-60.rom0.bin many/tide.rom{0,1,2}.{bin,hex} many/tide.yaml
+build 2 pier-clock.yaml --near many -o none
+holds 'many: the first of them' grep -Fqx '  hint: the folder many has neither pier-clock.rom0.bin nor pier-clock.rom0.hex; it has tide-board-60.rom0.bin, tide.rom0.bin, tide.rom0.hex, tide.rom1.bin and 3 more' stderr
 printf 'short' >damaged/tide-board-60.rom0.bin
 build 2 tide-board-60.yaml --near damaged -o none
 holds 'a wrong size' grep -q '\[image-size\]$' stderr
