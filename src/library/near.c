@@ -201,7 +201,7 @@ static bool walk_member(const struct nearing *nearing, size_t index, struct old_
 	read_start(nearing, &machine);
 	if (!find_codes(nearing, &machine))
 		return false;
-	if (!old_frame_walk(nearing->arena, &machine, frame))
+	if (!old_frame_walk(nearing->arena, &machine, frame) || !old_frame_read_likest(frame, member->timeline))
 		return report_memory(nearing);
 	if (!frame->closed)
 		notice_open_frame(nearing, member, frame);
@@ -283,18 +283,42 @@ static void keep_nearer(const struct nearing *nearing, struct nearest *nearest, 
 		*nearest = (struct nearest){other, change};
 }
 
-// Tries all ways to match cells, and, last, to keep nothing.
-static scanlatch_images *make_nearest(const struct nearing *nearing, const struct old_frame *frames)
+// Tries all ways to match cells.
+static bool try_ways(const struct nearing *nearing, const struct old_frame *frames, struct nearest *nearest)
 {
-	struct nearest nearest = {.images = NULL};
 	scanlatch_images *images;
 	bool good = true;
-	for (unsigned way = 0; good && way < NEAR_WAYS && !is_same(&nearest); way++) {
+	for (unsigned way = 0; good && way < NEAR_WAYS && !is_same(nearest); way++) {
 		good = try_way(nearing, frames, (enum near_way)way, &images);
-		keep_nearer(nearing, &nearest, images);
+		keep_nearer(nearing, nearest, images);
 	}
+	return good;
+}
+
+// Reads frames as the new plan says that were read otherwise. False if there are none.
+static bool read_as_planned(const struct nearing *nearing, struct old_frame *frames)
+{
+	bool any = false;
+	for (size_t index = 0; index < nearing->plan->member_count; index++) {
+		struct old_frame *frame = &frames[index];
+		if (frame->read.latched == frame->planned.latched && frame->read.inverted == frame->planned.inverted)
+			continue;
+		old_frame_read(frame, frame->planned);
+		any = true;
+	}
+	return any;
+}
+
+// Tries to match the likest frames, the same as planned, since fewer bytes may change where rows are not what they were meant to be, and, last, to
+// keep nothing.
+static scanlatch_images *make_nearest(const struct nearing *nearing, struct old_frame *frames)
+{
+	struct nearest nearest = {.images = NULL};
+	bool good = try_ways(nearing, frames, &nearest);
+	if (good && !is_same(&nearest) && read_as_planned(nearing, frames))
+		good = try_ways(nearing, frames, &nearest);
 	if (good && !is_same(&nearest)) {
-		images = images_make(nearing->plan, NULL, nearing->messages);
+		scanlatch_images *images = images_make(nearing->plan, NULL, nearing->messages);
 		good = images != NULL;
 		keep_nearer(nearing, &nearest, images);
 	}

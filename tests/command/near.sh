@@ -10,6 +10,8 @@ cp plans/*.yaml tests/good/codes-auto.yaml "$work"
 cd "$work" || exit 1
 # A decoder whose codes the planner chooses.
 sed -E '/codes: \[/s/codes: \[[^]]*\]/codes: auto/; /start: 0x4000/d; s/hold: \{ code: 0, at/hold: { at/' ferry-queue.yaml >ferry-auto.yaml
+# A region after the picture, which an edit takes away.
+sed -E 's/(region: picture, +cells: )80/\176/; /region: picture, +cells/a\      - { region: right edge, cells: 4, assert: [blank] }' tide-board-60.yaml >edge-board.yaml
 
 # build STATUS ARGUMENT …: leaves stdout and stderr in files.
 build() {
@@ -75,6 +77,16 @@ one_chip tide-board-60 tide-sync-high '/^  sync: /s/low/high/'
 one_chip tide-board-60 tide-direct 's/outputs: registered/outputs: direct/'
 one_chip tide-board-60 tide-porch '1,/region: front porch/s/(region: front porch, +cells: )2/\13/'
 one_chip tide-board-60 tide-short-porch '1,/region: front porch/s/(region: front porch, +cells: )2/\11/'
+# Cells that are gone from behind the picture go into the back porch before it: in each of 216 lines three rows of each copy lead elsewhere.
+edit 1400 edge-board edge-gone '/region: right edge/d'
+holds 'a region is gone: what shows stays' grep -q '^  rom2: keeps its bytes' counts
+# Polarities and outputs that are others beside an edit: rows are matched by what they were meant to show.
+rows_kept() {
+	edit 140000 "$@"
+	same "$2: rows that lead elsewhere" 2 "$(grep -c 'rom[01]: 204 of 131072 bytes change' counts)"
+}
+rows_kept tide-board-60 tide-burst-more 's/repeat: 18/repeat: 19/; /^  burst: /s/high/low/'
+rows_kept tide-board-60 tide-polarities-more 's/repeat: 18/repeat: 19/; /^  sync: /s/low/high/; /^  blank: /s/high/low/'
 edit 3200 tide-board-60 tide-longer 's/cells: 101/cells: 102/; s/stretch: auto/stretch: 1/; s/phase: every line/phase: free/'
 edit 600 tide-board-50 board-more 's/repeat: 37/repeat: 38/'
 edit 400 ferry-queue ferry-more 's/repeat: 3,/repeat: 4,/'
