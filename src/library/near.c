@@ -295,15 +295,14 @@ static bool try_ways(const struct nearing *nearing, const struct old_frame *fram
 	return good;
 }
 
-// Reads frames as the new plan says that were read otherwise. False if there are none.
+// Reads frames with the new plan's polarities that were read with others. False if there are none.
 static bool read_as_planned(const struct nearing *nearing, struct old_frame *frames)
 {
 	bool any = false;
 	for (size_t index = 0; index < nearing->plan->member_count; index++) {
-		struct old_frame *frame = &frames[index];
-		if (frame->read.latched == frame->planned.latched && frame->read.inverted == frame->planned.inverted)
+		if (frames[index].inverted == 0)
 			continue;
-		old_frame_read(frame, frame->planned);
+		old_frame_read(&frames[index], 0);
 		any = true;
 	}
 	return any;

@@ -497,19 +497,18 @@ const struct preference *near_preference(struct arena *arena, const struct timel
 	return keep(&near);
 }
 
-bool near_likeness(struct arena *arena, const struct timeline *timeline, const struct old_frame *old, struct likeness *likeness)
+bool near_likeness(struct arena *arena, const struct timeline *timeline, const struct old_frame *old, uint64_t *alike)
 {
 	struct near near;
 	if (!begin(&near, arena, timeline, old, NEAR_LINES) || !pair_lines(&near))
 		return false;
-	*likeness = (struct likeness){0, 0};
+	*alike = 0;
 	for (uint32_t cell = 0; cell < timeline->cell_count; cell++) {
 		const uint32_t before = near.old_cells[cell], held = is_held(&near, cell) ? timeline->hold_mask[cell] : 0;
 		if (before == NO_CELL)
 			continue;
-		likeness->most += held != 0 ? 2 : 1;
-		likeness->alike += shown(&near.old, before) == shown(&near.now, cell);
-		likeness->alike += held != 0 && ((old->states[before] ^ timeline->hold_value[cell]) & held) == 0;
+		*alike += shown(&near.old, before) == shown(&near.now, cell);
+		*alike += held != 0 && ((old->states[before] ^ timeline->hold_value[cell]) & held) == 0;
 	}
 	return true;
 }

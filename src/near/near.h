@@ -22,12 +22,6 @@ struct old_machine {
 	const size_t *code_counts;
 };
 
-// How rows show at the pins. The old plan may have said otherwise than the new one.
-struct reading {
-	bool latched;              // a row shows while the next cell does
-	uint64_t inverted;         // data signals whose polarity is the other one
-};
-
 // A frame as a machine walks it.
 struct old_frame {
 	bool closed;               // it came back to its first cell
@@ -36,7 +30,8 @@ struct old_frame {
 	uint64_t *rows;            // [cell_count]: data signals that the row of each cell asserts, with the polarities of the plan
 	uint64_t *decoded;         // [cell_count]: signals from fields that are asserted
 	uint64_t *pins;            // [cell_count]: signals that are asserted at their pins, of the line stage, as the rows are read
-	struct reading planned, read; // as the new plan would have it, and as they are
+	bool latched;              // a row shows while the next cell does
+	uint64_t inverted;         // data signals that are read with the other polarity than the plan's
 	uint64_t data;             // data signals that are known
 	uint64_t known;            // the same, and the decoded signals that are known
 	uint32_t *lines;           // [line_count]: the first cell of each line of a line-frame machine; a loop's are not known
@@ -47,11 +42,11 @@ struct old_frame {
 // spare rows do. One that does not close is as long as no state comes twice, and may be empty. False when memory is out.
 bool old_frame_walk(struct arena *arena, const struct old_machine *machine, struct old_frame *frame);
 
-// Fills a frame's pins. Cannot fail.
-void old_frame_read(struct old_frame *frame, struct reading reading);
+// Fills a frame's pins from its rows. Cannot fail.
+void old_frame_read(struct old_frame *frame, uint64_t inverted);
 
-// Reads a frame as its plan's reader would, of the readings that an edit of `outputs` or `active` leaves: by how alike cells are to those of a new
-// timeline, and how well their states suit what is held there. Where that does not tell, as the new plan says. False when memory is out.
+// The same, with the polarities that an edit of `active` may have left: signals whose times on and off changed places are read the other way round if
+// cells are liker to those of the new timeline so, and suit better what is held there. False when memory is out.
 bool old_frame_read_likest(struct old_frame *frame, const struct timeline *timeline);
 
 // How cells are matched. Which is best depends on what changed: data signals that move change the fewest bytes if cells keep their places, while
@@ -66,13 +61,8 @@ enum near_way {
 // Finds the old state of each cell of a timeline. In the arena; NULL when memory is out. Linear in cells, but for lines that all differ.
 const struct preference *near_preference(struct arena *arena, const struct timeline *timeline, const struct old_frame *old, enum near_way way);
 
-// How alike the cells of an old frame and a timeline are, by lines.
-struct likeness {
-	uint64_t alike;            // cells that show the same, and held ones whose state suits the hold
-	uint64_t most;             // what that could be
-};
-
-// False when memory is out, for which the arena is used.
-bool near_likeness(struct arena *arena, const struct timeline *timeline, const struct old_frame *old, struct likeness *likeness);
+// How alike the cells of an old frame and a timeline are, lines matched as by NEAR_LINES: those that show the same, and held ones whose state suits
+// the hold. False when memory is out, for which the arena is used.
+bool near_likeness(struct arena *arena, const struct timeline *timeline, const struct old_frame *old, uint64_t *alike);
 
 #endif

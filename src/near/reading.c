@@ -1,14 +1,14 @@
-// How old rows were meant. A plan whose `outputs` or polarities were edited shows the same cells by other rows.
+// How old rows were meant. A plan whose polarities were edited shows the same cells by other levels.
 #include "base/arena.h"
 #include "near/near.h"
 
 // Latched pins are in the row of the cell before.
-void old_frame_read(struct old_frame *frame, struct reading reading)
+void old_frame_read(struct old_frame *frame, uint64_t inverted)
 {
-	frame->read = reading;
+	frame->inverted = inverted;
 	for (uint32_t cell = 0; cell < frame->cell_count; cell++) {
 		const uint32_t before = cell == 0 ? frame->cell_count - 1 : cell - 1;
-		frame->pins[cell] = ((frame->rows[reading.latched ? before : cell] ^ reading.inverted) & frame->data) | frame->decoded[cell];
+		frame->pins[cell] = ((frame->rows[frame->latched ? before : cell] ^ inverted) & frame->data) | frame->decoded[cell];
 	}
 }
 
@@ -40,51 +40,29 @@ static uint64_t find_inverted(const struct old_frame *frame, const struct timeli
 	return inverted;
 }
 
-// The likest reading so far.
-struct choice {
-	struct old_frame *frame;
-	const struct timeline *timeline;
-	struct reading reading;
-	struct likeness likeness;
-};
-
-static bool try_reading(struct choice *choice, struct reading reading)
+static bool read_likest(struct arena *arena, struct old_frame *frame, const struct timeline *timeline)
 {
-	struct arena *arena = arena_create();
-	struct likeness likeness;
-	old_frame_read(choice->frame, reading);
-	const bool good = arena != NULL && near_likeness(arena, choice->timeline, choice->frame, &likeness);
-	arena_destroy(arena);
-	if (good && (choice->likeness.most == 0 || likeness.alike > choice->likeness.alike)) {
-		choice->reading = reading;
-		choice->likeness = likeness;
-	}
-	return good;
-}
-
-static bool try_others(struct choice *choice)
-{
-	const bool latched = choice->frame->planned.latched;
-	struct arena *arena = arena_create();
-	const uint64_t *pins = arena != NULL ? timeline_pins(choice->timeline, arena) : NULL;
-	const uint64_t inverted = pins != NULL ? find_inverted(choice->frame, choice->timeline, pins) : 0;
-	bool good = pins != NULL;
-	arena_destroy(arena);
-	if (inverted != 0)
-		good = good && try_reading(choice, (struct reading){latched, inverted});
-	// The stages of a line-frame machine would run otherwise too.
-	if (choice->timeline->plan->machine.form == FORM_LOOP)
-		good = good && try_reading(choice, (struct reading){!latched, choice->reading.inverted});
-	return good;
+	const uint64_t *pins = timeline_pins(timeline, arena);
+	uint64_t as_planned, alike;
+	if (pins == NULL)
+		return false;
+	const uint64_t inverted = find_inverted(frame, timeline, pins);
+	if (inverted == 0)
+		return true;
+	if (!near_likeness(arena, timeline, frame, &as_planned))
+		return false;
+	old_frame_read(frame, inverted);
+	if (!near_likeness(arena, timeline, frame, &alike))
+		return false;
+	if (alike <= as_planned)
+		old_frame_read(frame, 0);
+	return true;
 }
 
 bool old_frame_read_likest(struct old_frame *frame, const struct timeline *timeline)
 {
-	struct choice choice = {frame, timeline, frame->planned, {0, 0}};
-	bool good = try_reading(&choice, frame->planned);
-	// Frames that are much the same were meant the same.
-	if (good && choice.likeness.alike < choice.likeness.most - choice.likeness.most / 8)
-		good = try_others(&choice);
-	old_frame_read(frame, choice.reading);
+	struct arena *arena = arena_create();
+	const bool good = arena != NULL && read_likest(arena, frame, timeline);
+	arena_destroy(arena);
 	return good;
 }

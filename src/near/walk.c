@@ -126,7 +126,7 @@ static void record(struct walk *walk, uint32_t first)
 		begins = machine_steps(walk->machine, state);
 		state = machine_next(walk->machine, state);
 	}
-	old_frame_read(frame, frame->planned);
+	old_frame_read(frame, 0);
 }
 
 static bool allocate(struct walk *walk)
@@ -172,7 +172,7 @@ bool old_frame_walk(struct arena *arena, const struct old_machine *machine, stru
 	walk.machine = machine_create(arena, &walk.wiring, machine->images, machine->bank);
 	if (walk.machine == NULL)
 		return false;
-	frame->planned = (struct reading){.latched = walk.wiring.line.outputs == OUTPUTS_REGISTERED, .inverted = 0};
+	frame->latched = walk.wiring.line.outputs == OUTPUTS_REGISTERED;
 	frame->data = data_signals(&walk);
 	frame->known = known_signals(&walk);
 	return walk.wiring.form == FORM_LOOP ? walk_loop(&walk) : walk_lines(&walk);

@@ -131,51 +131,45 @@ static void test_empty(void **state)
 		matched(way, "", "ssp", 1, "...");
 }
 
-// An old frame of rows, read as the new plan says; then as is likest.
-static struct old_frame rows_of(struct arena *arena, const char *letters, bool latched)
-{
-	struct old_frame frame = old_frame(arena, letters);
-	frame.data = frame.known;
-	frame.planned = (struct reading){.latched = latched};
-	frame.rows = frame.pins;
-	frame.pins = arena_array(arena, frame.cell_count, sizeof *frame.pins);
-	frame.decoded = arena_array(arena, frame.cell_count, sizeof *frame.decoded);
-	assert_true(frame.pins != NULL && frame.decoded != NULL);
-	memset(frame.decoded, 0, frame.cell_count * sizeof *frame.decoded);
-	return frame;
-}
-
-// rows: those of an old frame, whose bits that are set in `inverted` are turned over.
-static void read_as(const char *rows, uint64_t inverted, const char *now, unsigned repeat, bool latched, uint64_t wanted_inverted)
+// rows: those of an old frame, latched or not, whose bits in `inverted` are turned over. What is read are the cells as they were meant.
+static void read_as(const char *rows, bool latched, uint64_t inverted, const char *now, unsigned repeat)
 {
 	struct arena *arena = arena_create();
 	assert_non_null(arena);
-	struct old_frame frame = rows_of(arena, rows, true);
+	struct old_frame frame = old_frame(arena, rows);
+	const uint32_t count = frame.cell_count;
 	struct laid laid = new_frame(now, repeat);
-	for (uint32_t cell = 0; cell < frame.cell_count; cell++)
-		frame.rows[cell] ^= inverted;
+	frame.latched = latched;
+	frame.data = frame.known;
+	frame.rows = arena_array(arena, count, sizeof *frame.rows);
+	frame.decoded = arena_array(arena, count, sizeof *frame.decoded);
+	assert_true(frame.rows != NULL && frame.decoded != NULL);
+	for (uint32_t cell = 0; cell < count; cell++) {
+		frame.rows[cell] = pins_of(rows[cell]) ^ inverted;
+		frame.decoded[cell] = 0;
+	}
+	old_frame_read(&frame, 0);
 	assert_true(old_frame_read_likest(&frame, laid.timeline));
-	assert_int_equal(frame.read.inverted, wanted_inverted);
-	assert_int_equal(frame.read.latched, latched);
-	// What is read are the cells as they were meant.
-	for (uint32_t cell = 0, count = frame.cell_count; cell < count; cell++)
+	assert_int_equal(frame.inverted, inverted);
+	for (uint32_t cell = 0; cell < count; cell++)
 		assert_int_equal(frame.pins[cell], pins_of(rows[latched ? (cell + count - 1) % count : cell]));
 	release(&laid);
 	arena_destroy(arena);
 }
 
-// Rows that are latched are a cell before what they show.
 static void test_read(void **state)
 {
 	(void)state;
-	read_as("spppls" "spppls", 0, "sspppl", 2, true, 0);
-	read_as("spppls" "spppls", LOAD, "sspppl", 2, true, LOAD);
-	read_as("spppls" "spppls", SYNC, "sspppl", 2, true, SYNC);
-	read_as("spppls" "spppls", SYNC | LOAD, "sspppl", 2, true, SYNC | LOAD);
-	// A line more is no reason to read otherwise, and neither is an edge that moved.
-	read_as("spppls" "spppls", 0, "sspppl", 3, true, 0);
-	read_as("spppls" "spppls", LOAD, "sspppl", 3, true, LOAD);
-	read_as("spppls" "spppls", 0, "sssppl", 2, true, 0);
+	for (unsigned inverted = 0; inverted < 4; inverted++) {
+		const uint64_t signals = (inverted & 1 ? SYNC : 0) | (inverted & 2 ? LOAD : 0);
+		read_as("spppls" "spppls", true, signals, "sspppl", 2);
+		read_as("sspppl" "sspppl", false, signals, "sspppl", 2);
+		// A line more is no reason to read otherwise, and neither is an edge that moved.
+		read_as("spppls" "spppls", true, signals, "sspppl", 3);
+		read_as("sspppl" "sspppl", false, signals, "ssppll", 2);
+	}
+	// Not by times alone: sync that is longer by half a line is asserted as long as it was not before.
+	read_as("ssplplpl" "ssplplpl", false, 0, "ssssslpl", 2);
 }
 
 int main(void)
