@@ -78,9 +78,10 @@ typedef struct scanlatch_images scanlatch_images;
  * can be found). The plan must outlive the images. */
 scanlatch_images *scanlatch_images_make(const scanlatch_plan *plan, scanlatch_messages *messages);
 
-/* The same, near to images that were read: cells keep the states that those gave them wherever the plan still allows it, so that as few bytes as may
- * be change. What stands in the way is given up; damaged images are only less near. `old` are of this plan's chips, and of its name; `folder` is where
- * they were read from: if there is a manifest, it tells where the old frame begins, and whether chips were wired otherwise, which is an error. */
+/* The same, near to images that were read: cells keep the states that those gave them wherever the plan still allows it, so that as few chips as
+ * may be change, and of these as few bytes. What stands in the way is given up; damaged images are only less near. `old` are of this plan's chips,
+ * and of its name; `folder` is where they were read from: if there is a manifest, it tells where the old frame begins, and whether chips were wired
+ * otherwise, which is an error. */
 scanlatch_images *scanlatch_images_make_near(const scanlatch_plan *plan, const scanlatch_images *old, const char *folder,
                                              scanlatch_messages *messages);
 

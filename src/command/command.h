@@ -102,6 +102,7 @@ int write_result(const char *path, const char *result);
 int memory_error(void);
 
 bool is_folder(const char *path);
+bool exists(const char *path);
 
 // Checks the arguments of a command that takes a plan (or what it calls so) and images: a folder, or LABEL=FILE for each chip. EXIT_GOOD,
 // or EXIT_BAD after saying what is wrong.

@@ -9,6 +9,12 @@ bool is_folder(const char *path)
 	return stat(path, &status) == 0 && S_ISDIR(status.st_mode);
 }
 
+bool exists(const char *path)
+{
+	struct stat status;
+	return stat(path, &status) == 0;
+}
+
 int check_image_arguments(const char *command, const char *what, char **arguments, int count)
 {
 	if (count < 2)
@@ -16,7 +22,8 @@ int check_image_arguments(const char *command, const char *what, char **argument
 	const bool folder = is_folder(arguments[1]) || strchr(arguments[1], '=') == NULL;
 	if (folder && count > 2)
 		return usage_error(command, "wanted one folder, or LABEL=FILE for each chip, found \"%s\" and more", arguments[1]);
-	if (folder && !is_folder(arguments[1]))
+	// What cannot be found is the system's to say, when it is read.
+	if (folder && exists(arguments[1]) && !is_folder(arguments[1]))
 		return usage_error(command, "\"%s\" is not a folder; a single image is given as LABEL=FILE", arguments[1]);
 	for (int index = 1; !folder && index < count; index++)
 		if (strchr(arguments[index], '=') == NULL)
@@ -38,7 +45,7 @@ static bool read_files(scanlatch_images *images, char **arguments, int count, sc
 
 bool read_images(scanlatch_images *images, char **arguments, int count, scanlatch_messages *messages)
 {
-	if (is_folder(arguments[0]))
+	if (is_folder(arguments[0]) || strchr(arguments[0], '=') == NULL)
 		return scanlatch_images_read_folder(images, arguments[0], messages);
 	return read_files(images, arguments, count, messages);
 }

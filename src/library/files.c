@@ -1,10 +1,15 @@
+#include <dirent.h>
 #include <errno.h>
+#include <stdlib.h>
 #include <string.h>
 #include <sys/stat.h>
 
 #include "base/arena.h"
 #include "base/file.h"
 #include "library/library.h"
+#include "plan/characters.h"
+
+#define MOST_NAMED 4u // files
 
 static bool report(scanlatch_messages *messages, const char *path, enum read_status status, int error, const char *what, size_t limit)
 {
@@ -97,11 +102,62 @@ bool scanlatch_images_read_file(scanlatch_images *images, const char *label, con
 	return good;
 }
 
+static int is_image_name(const struct dirent *entry)
+{
+	const char *ending = strrchr(entry->d_name, '.');
+	return ending != NULL && (strcmp(ending, ".bin") == 0 || strcmp(ending, ".hex") == 0);
+}
+
+// Whether it is a file that the plan's images are read from.
+static bool is_of_plan(const scanlatch_plan *plan, const char *file)
+{
+	const char *name = scanlatch_plan_name(plan);
+	const size_t length = strlen(name);
+	bool found = false;
+	for (size_t chip = 0; chip < scanlatch_plan_chips(plan) && !found; chip++) {
+		const char *label = scanlatch_plan_chip_label(plan, chip);
+		const size_t end = length + 1 + strlen(label);
+		found = strlen(file) == end + 4 && strncmp(file, name, length) == 0 && file[length] == '.' &&
+		        strncmp(file + length + 1, label, strlen(label)) == 0;
+	}
+	return found;
+}
+
+void put_other_images(const scanlatch_plan *plan, const char *folder, struct text *out)
+{
+	struct dirent **entries;
+	const int count = scandir(folder, &entries, is_image_name, alphasort);
+	unsigned shown = 0, left = 0;
+	for (int index = 0; index < count; index++) {
+		if (!is_of_plan(plan, entries[index]->d_name) && shown == MOST_NAMED)
+			left++;
+		else if (!is_of_plan(plan, entries[index]->d_name))
+			text_printf(out, "%s%s", shown++ == 0 ? "; it has " : ", ", SHORT(entries[index]->d_name));
+		free(entries[index]);
+	}
+	if (count >= 0)
+		free(entries);
+	if (left > 0)
+		text_printf(out, " and %u more", left);
+}
+
+// Whether there is such a folder. False after reporting.
+static bool open_folder(const char *folder, scanlatch_messages *messages)
+{
+	DIR *stream = opendir(folder);
+	if (stream == NULL)
+		return report(messages, folder, READ_SYSTEM, errno, "a folder of images", 0);
+	closedir(stream);
+	return true;
+}
+
 bool scanlatch_images_read_folder(scanlatch_images *images, const char *folder, scanlatch_messages *messages)
 {
 	static const char *const endings[] = {"bin", "hex"};
 	const scanlatch_plan *plan = images->plan;
 	bool good = true;
+	if (!open_folder(folder, messages))
+		return false;
 	for (size_t chip = 0; chip < scanlatch_plan_chips(plan); chip++) {
 		for (size_t ending = 0; ending < sizeof endings / sizeof *endings; ending++) {
 			const char *label = scanlatch_plan_chip_label(plan, chip);

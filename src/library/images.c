@@ -223,9 +223,13 @@ bool images_complete(const scanlatch_images *images, const char *folder, scanlat
 			continue;
 		diagnose(messages->diagnostics, RULE_IMAGE_MISSING, (struct place){images->plan->source, 0, 0}, "there is no image for chip \"%s\" (%s)",
 		         plan->chips[chip].label, plan->chips[chip].part->name);
+		struct text others = {0};
+		if (folder != NULL && complete)
+			put_other_images(images->plan, folder, &others);
 		if (folder != NULL)
-			diagnose_hint(messages->diagnostics, "the folder %s has neither %s.%s.bin nor %s.%s.hex", SHORT(folder), name,
-			              plan->chips[chip].label, name, plan->chips[chip].label);
+			diagnose_hint(messages->diagnostics, "the folder %s has neither %s.%s.bin nor %s.%s.hex%s", SHORT(folder), name,
+			              plan->chips[chip].label, name, plan->chips[chip].label, text_string(&others));
+		text_release(&others);
 		complete = false;
 	}
 	return complete;

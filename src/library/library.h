@@ -72,6 +72,9 @@ char *take_json(json_t *document);
 // True if every chip has its bytes; otherwise adds an error for each that has not. `folder`: where they were looked for, or NULL.
 bool images_complete(const scanlatch_images *images, const char *folder, scanlatch_messages *messages);
 
+// Puts "; it has A.bin, B.hex" of the first few image files of a folder that no chip of the plan is read from, by name; nothing if there are none.
+void put_other_images(const scanlatch_plan *plan, const char *folder, struct text *out);
+
 // Fills the chips from the tables of all members, each in its banks. False after reporting; then members disagree, or memory is out.
 bool banks_fill(scanlatch_images *images, scanlatch_messages *messages);
 

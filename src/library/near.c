@@ -201,19 +201,32 @@ static bool walk_member(const struct nearing *nearing, size_t index, struct old_
 	read_start(nearing, &machine);
 	if (!find_codes(nearing, &machine))
 		return false;
-	if (!old_frame_walk(nearing->arena, &machine, frame))
+	if (!old_frame_walk(nearing->arena, &machine, frame) || !old_frame_read_likest(frame, member->timeline))
 		return report_memory(nearing);
 	if (!frame->closed)
 		notice_open_frame(nearing, member, frame);
 	return true;
 }
 
-static size_t count_changed(const struct nearing *nearing, const scanlatch_images *images)
+// What there is to burn. A chip that keeps its bytes stays in its socket, so chips count before bytes.
+struct change {
+	size_t chips, bytes;
+};
+
+static struct change count_change(const struct nearing *nearing, const scanlatch_images *images)
 {
-	size_t changed = 0;
-	for (size_t chip = 0; chip < scanlatch_plan_chips(nearing->plan); chip++)
-		changed += scanlatch_images_differing(nearing->old, images, chip);
-	return changed;
+	struct change change = {0, 0};
+	for (size_t chip = 0; chip < scanlatch_plan_chips(nearing->plan); chip++) {
+		const size_t bytes = scanlatch_images_differing(nearing->old, images, chip);
+		change.chips += bytes > 0;
+		change.bytes += bytes;
+	}
+	return change;
+}
+
+static bool is_less(struct change change, struct change other)
+{
+	return change.chips != other.chips ? change.chips < other.chips : change.bytes < other.bytes;
 }
 
 // Makes images with cells matched in one way. NULL if that does not go (plans of a set may come to different codes), or if memory is out, which
@@ -247,33 +260,70 @@ static bool try_way(const struct nearing *nearing, const struct old_frame *frame
 	return good || report_memory(nearing);
 }
 
-// Of the images so far and others, NULL if there are none, those in which fewer bytes change; the others are given up.
-static scanlatch_images *nearer(const struct nearing *nearing, scanlatch_images *best, scanlatch_images *other)
+// The nearest images so far.
+struct nearest {
+	scanlatch_images *images; // NULL: none yet
+	struct change change;
+};
+
+static bool is_same(const struct nearest *nearest)
 {
-	if (other == NULL)
-		return best;
-	const bool better = best == NULL || count_changed(nearing, other) < count_changed(nearing, best);
-	scanlatch_images_destroy(better ? best : other);
-	return better ? other : best;
+	return nearest->images != NULL && nearest->change.bytes == 0;
 }
 
-// Tries all ways to match cells, and, last, to keep nothing.
-static scanlatch_images *make_nearest(const struct nearing *nearing, const struct old_frame *frames)
+// Keeps others, NULL if there are none, if less changes in them; else they are given up.
+static void keep_nearer(const struct nearing *nearing, struct nearest *nearest, scanlatch_images *other)
 {
-	scanlatch_images *best = NULL, *images;
+	if (other == NULL)
+		return;
+	const struct change change = count_change(nearing, other);
+	const bool better = nearest->images == NULL || is_less(change, nearest->change);
+	scanlatch_images_destroy(better ? nearest->images : other);
+	if (better)
+		*nearest = (struct nearest){other, change};
+}
+
+// Tries all ways to match cells.
+static bool try_ways(const struct nearing *nearing, const struct old_frame *frames, struct nearest *nearest)
+{
+	scanlatch_images *images;
 	bool good = true;
-	for (unsigned way = 0; good && way < NEAR_WAYS && (best == NULL || count_changed(nearing, best) > 0); way++) {
+	for (unsigned way = 0; good && way < NEAR_WAYS && !is_same(nearest); way++) {
 		good = try_way(nearing, frames, (enum near_way)way, &images);
-		best = nearer(nearing, best, images);
+		keep_nearer(nearing, nearest, images);
 	}
-	if (good && (best == NULL || count_changed(nearing, best) > 0)) {
-		images = images_make(nearing->plan, NULL, nearing->messages);
+	return good;
+}
+
+// Reads frames with the new plan's polarities that were read with others. False if there are none.
+static bool read_as_planned(const struct nearing *nearing, struct old_frame *frames)
+{
+	bool any = false;
+	for (size_t index = 0; index < nearing->plan->member_count; index++) {
+		if (frames[index].inverted == 0)
+			continue;
+		old_frame_read(&frames[index], 0);
+		any = true;
+	}
+	return any;
+}
+
+// Tries to match the likest frames, the same as planned, since fewer bytes may change where rows are not what they were meant to be, and, last, to
+// keep nothing.
+static scanlatch_images *make_nearest(const struct nearing *nearing, struct old_frame *frames)
+{
+	struct nearest nearest = {.images = NULL};
+	bool good = try_ways(nearing, frames, &nearest);
+	if (good && !is_same(&nearest) && read_as_planned(nearing, frames))
+		good = try_ways(nearing, frames, &nearest);
+	if (good && !is_same(&nearest)) {
+		scanlatch_images *images = images_make(nearing->plan, NULL, nearing->messages);
 		good = images != NULL;
-		best = nearer(nearing, best, images);
+		keep_nearer(nearing, &nearest, images);
 	}
 	if (good)
-		return best;
-	scanlatch_images_destroy(best);
+		return nearest.images;
+	scanlatch_images_destroy(nearest.images);
 	return NULL;
 }
 

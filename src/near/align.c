@@ -43,13 +43,14 @@ struct near {
 	enum near_way way;
 	uint32_t *matched;   // [longest new line]: cells of an old line that those of a new one are, or NO_CELL
 	uint32_t matched_old, matched_now; // what these lines show
+	bool *used;          // [longest old line]: cells that a new one is
 	struct span *old_spans, *now_spans; // [MOST_SPANS]
 	uint32_t *table;     // [MOST_SPANS + 1][MOST_SPANS + 1]
 	const struct timeline *timeline;
 	const struct old_frame *old_frame;
 	struct side old, now;
 	uint32_t *common;    // [old.shows_count][now.shows_count]: cells that they have in common
-	uint32_t *states;    // [cell_count]
+	uint32_t *old_cells; // [cell_count]: the old cell of each new one, or NO_CELL
 	uint32_t *best;      // [line types]: cells that the best line of the type so far has in common with an old one, plus one
 	uint32_t *first;     // [line types]: the first cell of the first line of the type
 };
@@ -216,19 +217,25 @@ static uint32_t span_worth(const struct near *near, uint32_t old, uint32_t now)
 	return before->shown != after->shown ? 0 : before->cells < after->cells ? before->cells : after->cells;
 }
 
-// Of two spans of unequal length, the ends that are at the same place stay together; otherwise the beginnings.
-static void match_span(struct near *near, const struct span *old, const struct span *now)
+// Of two spans of unequal length, the ends that are at the same place stay together; otherwise the beginnings, and where nothing is held the last
+// cells too, since with registered outputs their rows have what the next span shows.
+static void match_span(struct near *near, const struct span *old, const struct span *now, bool held)
 {
+	const uint32_t cells = old->cells < now->cells ? old->cells : now->cells;
 	const bool at_end = old->first != now->first && old->first + old->cells == now->first + now->cells;
-	for (uint32_t cell = 0; cell < old->cells && cell < now->cells; cell++) {
-		if (at_end)
-			near->matched[now->first + now->cells - 1 - cell] = old->first + old->cells - 1 - cell;
-		else
-			near->matched[now->first + cell] = old->first + cell;
-	}
+	const uint32_t from_begin = at_end ? 0 : held ? cells : cells - 1;
+	for (uint32_t cell = 0; cell < from_begin; cell++)
+		near->matched[now->first + cell] = old->first + cell;
+	for (uint32_t cell = 0; cell < cells - from_begin; cell++)
+		near->matched[now->first + now->cells - 1 - cell] = old->first + old->cells - 1 - cell;
 }
 
-static void match_spans(struct near *near, uint32_t old_count, uint32_t now_count)
+static bool is_held(const struct near *near, uint32_t cell)
+{
+	return near->timeline->has_holds && near->timeline->hold_mask[cell] != 0;
+}
+
+static void match_spans(struct near *near, const struct piece *piece, uint32_t old_count, uint32_t now_count)
 {
 	for (uint32_t old = old_count + 1; old-- > 0;)
 		for (uint32_t now = now_count + 1; now-- > 0;) {
@@ -242,13 +249,52 @@ static void match_spans(struct near *near, uint32_t old_count, uint32_t now_coun
 		}
 	for (uint32_t old = 0, now = 0; old < old_count && now < now_count;) {
 		const uint32_t here = *spans_left(near, old, now), worth = span_worth(near, old, now);
-		if (worth > 0 && here == worth + *spans_left(near, old + 1, now + 1))
-			match_span(near, &near->old_spans[old++], &near->now_spans[now++]);
-		else if (here == *spans_left(near, old + 1, now))
+		if (worth > 0 && here == worth + *spans_left(near, old + 1, now + 1)) {
+			const struct span *span = &near->now_spans[now++];
+			match_span(near, &near->old_spans[old++], span, is_held(near, piece->first + span->first + span->cells - 1));
+		} else if (here == *spans_left(near, old + 1, now))
 			old++;
 		else
 			now++;
 	}
+}
+
+// The next cell of an old span, from one of its cells on, that no new cell is; the span's end if there is none.
+static uint32_t next_free(const struct near *near, const struct span *span, uint32_t cell)
+{
+	while (cell < span->cells && near->used[span->first + cell])
+		cell++;
+	return cell;
+}
+
+// New cells of a span on which nothing is held take what is free of old spans that show the same.
+static void fill_span(struct near *near, const struct piece *piece, const struct span *span, uint32_t old_count)
+{
+	uint32_t old = 0, free = 0;
+	for (uint32_t cell = span->first; cell < span->first + span->cells; cell++) {
+		if (near->matched[cell] != NO_CELL || is_held(near, piece->first + cell))
+			continue;
+		while (old < old_count && (near->old_spans[old].shown != span->shown ||
+		                           (free = next_free(near, &near->old_spans[old], free)) == near->old_spans[old].cells)) {
+			old++;
+			free = 0;
+		}
+		if (old == old_count)
+			return;
+		near->matched[cell] = near->old_spans[old].first + free;
+		near->used[near->matched[cell]] = true;
+	}
+}
+
+// Cells that are gone give their states to those that are new, so that of a region that went to another place only the ends change.
+static void match_rest(struct near *near, const struct piece *old, const struct piece *now, uint32_t old_count, uint32_t now_count)
+{
+	memset(near->used, 0, old->cells * sizeof *near->used);
+	for (uint32_t cell = 0; cell < now->cells; cell++)
+		if (near->matched[cell] != NO_CELL)
+			near->used[near->matched[cell]] = true;
+	for (uint32_t span = 0; span < now_count; span++)
+		fill_span(near, now, &near->now_spans[span], old_count);
 }
 
 // The cells of two pieces that are the same line, by what they show.
@@ -261,7 +307,8 @@ static void match_shown(struct near *near, const struct piece *old, const struct
 	}
 	for (uint32_t cell = 0; cell < now->cells; cell++)
 		near->matched[cell] = NO_CELL;
-	match_spans(near, old_count, now_count);
+	match_spans(near, now, old_count, now_count);
+	match_rest(near, old, now, old_count, now_count);
 }
 
 static void match_cells(struct near *near, const struct piece *old, const struct piece *now)
@@ -272,12 +319,11 @@ static void match_cells(struct near *near, const struct piece *old, const struct
 		match_places(near, old, now);
 }
 
-// Gives the cells from now_first on the states of the old line, as they are matched.
+// Keeps which cells of the old line those from now_first on are.
 static void prefer(struct near *near, const struct piece *old, const struct piece *now, uint32_t now_first)
 {
 	for (uint32_t cell = 0; cell < now->cells; cell++)
-		near->states[now_first + cell] =
-			near->matched[cell] == NO_CELL ? NO_STATE : near->old_frame->states[old->first + near->matched[cell]];
+		near->old_cells[now_first + cell] = near->matched[cell] == NO_CELL ? NO_CELL : old->first + near->matched[cell];
 }
 
 // In a line-frame machine the first line of a type stands for all: it takes the states of the line that has most in common with an old one.
@@ -388,8 +434,12 @@ static bool can_weigh(const struct near *near)
 static const struct preference *keep(struct near *near)
 {
 	struct preference *preference = arena_alloc(near->arena, sizeof *preference);
-	if (preference != NULL)
-		preference->state_of_cell = near->states;
+	uint32_t *states = arena_array(near->arena, near->timeline->cell_count, sizeof *states);
+	if (preference == NULL || states == NULL)
+		return NULL;
+	for (uint32_t cell = 0; cell < near->timeline->cell_count; cell++)
+		states[cell] = near->old_cells[cell] == NO_CELL ? NO_STATE : near->old_frame->states[near->old_cells[cell]];
+	preference->state_of_cell = states;
 	return preference;
 }
 
@@ -398,14 +448,14 @@ static bool begin(struct near *near, struct arena *arena, const struct timeline 
 	const uint64_t *pins = timeline_pins(timeline, arena);
 	*near = (struct near){.arena = arena, .way = way, .timeline = timeline, .old_frame = old, .old = {.pins = old->pins, .known = old->known},
 	                      .now = {.pins = pins, .known = old->known}};
-	near->states = arena_array(arena, timeline->cell_count, sizeof *near->states);
+	near->old_cells = arena_array(arena, timeline->cell_count, sizeof *near->old_cells);
 	near->best = arena_array(arena, timeline->plan->line_count, sizeof *near->best);
 	near->first = arena_array(arena, timeline->plan->line_count, sizeof *near->first);
-	if (pins == NULL || near->states == NULL || near->best == NULL || near->first == NULL)
+	if (pins == NULL || near->old_cells == NULL || near->best == NULL || near->first == NULL)
 		return false;
 	for (uint32_t line = timeline->line_count; line-- > 0;)
 		near->first[timeline->lines[line].type] = timeline->lines[line].first_cell;
-	memset(near->states, 0xFF, timeline->cell_count * sizeof *near->states);
+	memset(near->old_cells, 0xFF, timeline->cell_count * sizeof *near->old_cells);
 	return true;
 }
 
@@ -415,10 +465,11 @@ static bool begin_matching(struct near *near)
 	near->matched_old = near->matched_now = UINT32_MAX;
 	if (near->way != NEAR_SHOWN)
 		return near->matched != NULL;
+	near->used = arena_array(near->arena, near->old.longest, sizeof *near->used);
 	near->old_spans = arena_array(near->arena, MOST_SPANS, sizeof *near->old_spans);
 	near->now_spans = arena_array(near->arena, MOST_SPANS, sizeof *near->now_spans);
 	near->table = arena_array(near->arena, (MOST_SPANS + 1) * (MOST_SPANS + 1), sizeof *near->table);
-	return near->matched != NULL && near->old_spans != NULL && near->now_spans != NULL && near->table != NULL;
+	return near->matched != NULL && near->used != NULL && near->old_spans != NULL && near->now_spans != NULL && near->table != NULL;
 }
 
 static bool pair_lines(struct near *near)
@@ -442,6 +493,22 @@ const struct preference *near_preference(struct arena *arena, const struct timel
 	if (way != NEAR_FRAME)
 		return pair_lines(&near) ? keep(&near) : NULL;
 	for (uint32_t cell = 0; cell < timeline->cell_count && cell < old->cell_count; cell++)
-		near.states[cell] = old->states[cell];
+		near.old_cells[cell] = cell;
 	return keep(&near);
+}
+
+bool near_likeness(struct arena *arena, const struct timeline *timeline, const struct old_frame *old, uint64_t *alike)
+{
+	struct near near;
+	if (!begin(&near, arena, timeline, old, NEAR_LINES) || !pair_lines(&near))
+		return false;
+	*alike = 0;
+	for (uint32_t cell = 0; cell < timeline->cell_count; cell++) {
+		const uint32_t before = near.old_cells[cell], held = is_held(&near, cell) ? timeline->hold_mask[cell] : 0;
+		if (before == NO_CELL)
+			continue;
+		*alike += shown(&near.old, before) == shown(&near.now, cell);
+		*alike += held != 0 && ((old->states[before] ^ timeline->hold_value[cell]) & held) == 0;
+	}
+	return true;
 }

@@ -27,8 +27,13 @@ struct old_frame {
 	bool closed;               // it came back to its first cell
 	uint32_t cell_count;
 	uint32_t *states;          // [cell_count]: of the line stage, without the kind
-	uint64_t *pins;            // [cell_count]: signals that are asserted, of the line stage
-	uint64_t known;            // those of which that is known
+	uint64_t *rows;            // [cell_count]: data signals that the row of each cell asserts, with the polarities of the plan
+	uint64_t *decoded;         // [cell_count]: signals from fields that are asserted
+	uint64_t *pins;            // [cell_count]: signals that are asserted at their pins, of the line stage, as the rows are read
+	bool latched;              // a row shows while the next cell does
+	uint64_t inverted;         // data signals that are read with the other polarity than the plan's
+	uint64_t data;             // data signals that are known
+	uint64_t known;            // the same, and the decoded signals that are known
 	uint32_t *lines;           // [line_count]: the first cell of each line of a line-frame machine; a loop's are not known
 	uint32_t line_count;
 };
@@ -36,6 +41,13 @@ struct old_frame {
 // Walks the frame of old images from its first cell, into the arena. Of a loop without a start, from the state that most states lead to, as
 // spare rows do. One that does not close is as long as no state comes twice, and may be empty. False when memory is out.
 bool old_frame_walk(struct arena *arena, const struct old_machine *machine, struct old_frame *frame);
+
+// Fills a frame's pins from its rows. Cannot fail.
+void old_frame_read(struct old_frame *frame, uint64_t inverted);
+
+// The same, with the polarities that an edit of `active` may have left: signals whose times on and off changed places are read the other way round if
+// cells are liker to those of the new timeline so, and suit better what is held there. False when memory is out.
+bool old_frame_read_likest(struct old_frame *frame, const struct timeline *timeline);
 
 // How cells are matched. Which is best depends on what changed: data signals that move change the fewest bytes if cells keep their places, while
 // decoded ones need states with other codes then.
@@ -48,5 +60,9 @@ enum near_way {
 
 // Finds the old state of each cell of a timeline. In the arena; NULL when memory is out. Linear in cells, but for lines that all differ.
 const struct preference *near_preference(struct arena *arena, const struct timeline *timeline, const struct old_frame *old, enum near_way way);
+
+// How alike the cells of an old frame and a timeline are, lines matched as by NEAR_LINES: those that show the same, and held ones whose state suits
+// the hold. False when memory is out, for which the arena is used.
+bool near_likeness(struct arena *arena, const struct timeline *timeline, const struct old_frame *old, uint64_t *alike);
 
 #endif

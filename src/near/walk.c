@@ -94,44 +94,50 @@ static uint64_t decoded_pins(const struct walk *walk, uint32_t state)
 	return pins;
 }
 
+static uint64_t data_signals(const struct walk *walk)
+{
+	return walk->old->known & walk->wiring.line.data_signals;
+}
+
 static uint64_t known_signals(const struct walk *walk)
 {
 	const struct plan *plan = walk->old->plan;
-	uint64_t known = walk->old->known & walk->wiring.line.data_signals;
+	uint64_t known = data_signals(walk);
 	for (size_t signal = 0; signal < plan->signal_count; signal++)
 		if (plan->signals[signal].origin == FROM_FIELD && walk->old->codes[signal] != NULL)
 			known |= (uint64_t)1 << signal;
 	return known;
 }
 
-// Records the cells that were counted. Latched pins are in the row of the cell before.
+// Records the cells that were counted.
 static void record(struct walk *walk, uint32_t first)
 {
 	struct old_frame *frame = walk->frame;
-	const bool latched = walk->wiring.line.outputs == OUTPUTS_REGISTERED;
-	const uint64_t at_rest = levels_of(walk->old->plan, 0), data = walk->old->known & walk->wiring.line.data_signals;
+	const uint64_t at_rest = levels_of(walk->old->plan, 0);
 	uint32_t state = first, line = 0;
 	bool begins = true;
 	for (uint32_t cell = 0; cell < frame->cell_count; cell++) {
 		const uint64_t levels = machine_row(walk->machine, STAGE_LINE, machine_row_address(walk->machine, STAGE_LINE, state)).levels;
-		const uint32_t shown_at = !latched ? cell : cell + 1 == frame->cell_count ? 0 : cell + 1;
 		if (begins && line < frame->line_count)
 			frame->lines[line++] = cell;
 		frame->states[cell] = line_state(walk, state);
-		frame->pins[shown_at] |= (levels ^ at_rest) & data;
-		frame->pins[cell] |= decoded_pins(walk, frame->states[cell]);
+		frame->rows[cell] = (levels ^ at_rest) & frame->data;
+		frame->decoded[cell] = decoded_pins(walk, frame->states[cell]);
 		begins = machine_steps(walk->machine, state);
 		state = machine_next(walk->machine, state);
 	}
+	old_frame_read(frame, 0);
 }
 
 static bool allocate(struct walk *walk)
 {
 	struct old_frame *frame = walk->frame;
 	frame->states = arena_array(walk->arena, frame->cell_count, sizeof *frame->states);
+	frame->rows = arena_array(walk->arena, frame->cell_count, sizeof *frame->rows);
+	frame->decoded = arena_array(walk->arena, frame->cell_count, sizeof *frame->decoded);
 	frame->pins = arena_array(walk->arena, frame->cell_count, sizeof *frame->pins);
 	frame->lines = arena_array(walk->arena, frame->line_count, sizeof *frame->lines);
-	return frame->states != NULL && frame->pins != NULL && frame->lines != NULL;
+	return frame->states != NULL && frame->rows != NULL && frame->decoded != NULL && frame->pins != NULL && frame->lines != NULL;
 }
 
 static bool walk_loop(struct walk *walk)
@@ -166,6 +172,8 @@ bool old_frame_walk(struct arena *arena, const struct old_machine *machine, stru
 	walk.machine = machine_create(arena, &walk.wiring, machine->images, machine->bank);
 	if (walk.machine == NULL)
 		return false;
+	frame->latched = walk.wiring.line.outputs == OUTPUTS_REGISTERED;
+	frame->data = data_signals(&walk);
 	frame->known = known_signals(&walk);
 	return walk.wiring.form == FORM_LOOP ? walk_loop(&walk) : walk_lines(&walk);
 }

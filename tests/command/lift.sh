@@ -184,7 +184,7 @@ cp "$plan" "$work/repository/tide-board-60.yaml"
 cp "$work"/images/*.bin "$work/repository"
 echo '*.bin diff=scanlatch-rows' >"$work/repository/.gitattributes"
 holds 'git: a repository' in_git init -q
-in_git config diff.scanlatch-rows.textconv 'scanlatch lift --text tide-board-60.yaml'
+in_git config diff.scanlatch-rows.textconv "$(sed -n "s/^git config diff.scanlatch-rows.textconv '\(.*\) board.yaml'\$/\1/p" README.md) tide-board-60.yaml"
 in_git add . && in_git commit -q -m 'first'
 sed -i 's/burst,       time: 2.51 us/burst,       cells: 5/' "$work/repository/tide-board-60.yaml"
 holds 'git: one cell more of burst' "$SCANLATCH" build "$work/repository/tide-board-60.yaml" -o "$work/repository" --format bin
@@ -193,5 +193,55 @@ same 'git: nothing is wrong' '' "$(cat "$work/err")"
 same 'git: only the chip of the signals changes' 'tide-board-60.rom2.bin' "$(sed -n 's/^diff --git a.* b.\(.*\)/\1/p' "$work/out")"
 holds 'git: burst appears in a row' grep -q '^+0x[0-9A-F.x]*  blank  burst$' "$work/out"
 holds 'git: and no bytes do' test "$(grep -c 'Binary files' "$work/out")" -eq 0
+
+# What is no image of the board's chips, and boards that are bad or not there: git goes on, and tells them from each other.
+# goes_on NAME REGEX …: git log -p ends well and has these lines.
+goes_on() {
+	local name=$1
+	shift
+	in_git add -A && in_git commit -q -m "$name"
+	in_git log -p -- '*.bin' >"$work/out" 2>"$work/err"
+	same "git, $name: status" 0 $?
+	same "git, $name: nothing is wrong" '' "$(cat "$work/err")"
+	holds "git, $name: history goes back to the first commit" grep -q '^    first$' "$work/out"
+	for line in "$@"; do
+		holds "git, $name: $line" grep -Eqx -e "$line" "$work/out"
+	done
+}
+printf 'tide' >"$work/repository/a=tide.bin"
+goes_on 'another file' '\+a=tide.bin: no image of a chip of the board; 4 bytes, CRC-32 [0-9A-F]{8}'
+printf 'ebb' >"$work/repository/a=tide.bin"
+goes_on 'it changes' '-a=tide.bin: no image of a chip of the board; 4 bytes, CRC-32 [0-9A-F]{8}' \
+	'\+a=tide.bin: no image of a chip of the board; 3 bytes, CRC-32 [0-9A-F]{8}'
+truncate -s 1000 "$work/repository/tide-board-60.rom1.bin"
+goes_on 'a truncated image' '\+tide-board-60.rom1.bin: no image of a chip of the board; 1000 bytes, CRC-32 [0-9A-F]{8}' \
+	'\+tide-board-60.rom1.bin: error: 1000 bytes, but chip "rom1" \(28C010\) has 131072 \[image-size\]'
+: >"$work/repository/tide-board-60.rom1.bin"
+goes_on 'an empty image' '\+tide-board-60.rom1.bin: no image of a chip of the board; 0 bytes, CRC-32 00000000'
+echo 'scanlatch: 7' >"$work/repository/tide-board-60.yaml"
+goes_on 'a bad board' '\+tide-board-60.rom0.bin: no image of a chip of the board; 131072 bytes, CRC-32 [0-9A-F]{8}'
+rm "$work/repository/tide-board-60.yaml"
+goes_on 'no board' '\+tide-board-60.rom0.bin: no image of a chip of the board; 131072 bytes, CRC-32 [0-9A-F]{8}' \
+	'\+tide-board-60.yaml: error: cannot read a plan: No such file or directory \[file-unreadable\]'
+
+# By hand.
+ends 'as a textconv, an image' 0 --git "$plan" "$work/images/tide-board-60.rom0.bin"
+cp "$work/out" "$work/as-git"
+ends 'in words' 0 --text "$plan" "$work/images/tide-board-60.rom0.bin"
+same 'the same words' '' "$(diff "$work/as-git" "$work/out")"
+ends 'as a textconv, no file' 3 --git "$plan" "$work/nosuch.rom0.bin"
+ends 'as a textconv, a folder' 3 --git "$plan" "$work/images"
+ends 'as a textconv, two files' 2 --git "$plan" "$work/anything.bin" "$work/anything.bin"
+ends 'as a textconv, a plan to a file' 2 --git "$plan" "$work/anything.bin" -o "$work/none.yaml"
+printf 'tide' >"$work/short.rom0.bin"
+ends 'in words, a wrong size' 2 --text "$plan" "$work/short.rom0.bin"
+
+# ---- what is not there
+
+ends 'no folder' 3 "$plan" "$work/nosuch"
+same 'no folder: the system says so' "$work/nosuch: error: cannot read a folder of images: No such file or directory [file-unreadable]" \
+	"$(cat "$work/err")"
+ends 'no file in words' 3 --text "$plan" "$work/nosuch"
+holds 'no file in words: the system says so' grep -q 'nosuch: error: cannot read an image: No such file or directory \[file-unreadable\]$' "$work/err"
 
 finish

@@ -10,6 +10,8 @@ cp plans/*.yaml tests/good/codes-auto.yaml "$work"
 cd "$work" || exit 1
 # A decoder whose codes the planner chooses.
 sed -E '/codes: \[/s/codes: \[[^]]*\]/codes: auto/; /start: 0x4000/d; s/hold: \{ code: 0, at/hold: { at/' ferry-queue.yaml >ferry-auto.yaml
+# A region after the picture, which an edit takes away.
+sed -E 's/(region: picture, +cells: )80/\176/; /region: picture, +cells/a\      - { region: right edge, cells: 4, assert: [blank] }' tide-board-60.yaml >edge-board.yaml
 
 # build STATUS ARGUMENT …: leaves stdout and stderr in files.
 build() {
@@ -63,6 +65,28 @@ edit 700 tide-board-60 tide-fewer 's/repeat: 18/repeat: 17/'
 # Data signals that move change the chip alone that has them.
 edit 1036 tide-board-60 tide-edge 's/(region: breezeway, +cells: )1/\12/'
 holds 'an edge: two chips keep their bytes' test "$(grep -c 'rom[01]: keeps its bytes; 0 without' counts)" -eq 2
+# One chip to burn, though in three fewer bytes might change: only what the third one says has changed.
+one_chip() {
+	edit 131072 "$@"
+	same "$2: chips to burn" 1 "$(grep -c ' bytes change;' counts)"
+	same "$2: the others keep their bytes" 2 "$(grep -c 'rom[01]: keeps its bytes; 0 without --near$' counts)"
+}
+one_chip tide-board-60 tide-burst-low '/^  burst: /s/high/low/'
+one_chip tide-board-60 tide-blank-low '/^  blank: /s/high/low/'
+one_chip tide-board-60 tide-sync-high '/^  sync: /s/low/high/'
+one_chip tide-board-60 tide-direct 's/outputs: registered/outputs: direct/'
+one_chip tide-board-60 tide-porch '1,/region: front porch/s/(region: front porch, +cells: )2/\13/'
+one_chip tide-board-60 tide-short-porch '1,/region: front porch/s/(region: front porch, +cells: )2/\11/'
+# Cells that are gone from behind the picture go into the back porch before it: in each of 216 lines three rows of each copy lead elsewhere.
+edit 1400 edge-board edge-gone '/region: right edge/d'
+holds 'a region is gone: what shows stays' grep -q '^  rom2: keeps its bytes' counts
+# Polarities and outputs that are others beside an edit: rows are matched by what they were meant to show.
+rows_kept() {
+	edit 140000 "$@"
+	same "$2: rows that lead elsewhere" 2 "$(grep -c 'rom[01]: 204 of 131072 bytes change' counts)"
+}
+rows_kept tide-board-60 tide-burst-more 's/repeat: 18/repeat: 19/; /^  burst: /s/high/low/'
+rows_kept tide-board-60 tide-polarities-more 's/repeat: 18/repeat: 19/; /^  sync: /s/low/high/; /^  blank: /s/high/low/'
 edit 3200 tide-board-60 tide-longer 's/cells: 101/cells: 102/; s/stretch: auto/stretch: 1/; s/phase: every line/phase: free/'
 edit 600 tide-board-50 board-more 's/repeat: 37/repeat: 38/'
 edit 400 ferry-queue ferry-more 's/repeat: 3,/repeat: 4,/'
@@ -163,9 +187,19 @@ build 0 moved.yaml --near wired -o out
 holds 'a signal on another pin: U4 keeps its bytes' grep -q '^  U4: keeps its bytes' stdout
 
 # What is not there.
-build 2 tide-board-60.yaml --near nowhere -o none
-holds 'no folder' grep -q '\[image-missing\]$' stderr
+build 3 tide-board-60.yaml --near nowhere -o none
+same 'no folder: said once' 'nowhere: error: cannot read a folder of images: No such file or directory [file-unreadable]' "$(cat stderr)"
+build 3 tide-board-60.yaml --near tide-board-60.yaml -o none
+same 'a file: said once' 'tide-board-60.yaml: error: cannot read a folder of images: Not a directory [file-unreadable]' "$(cat stderr)"
 build 2 pier-clock.yaml --near old/tide-board-60 -o none
+holds 'of another plan: what is there' grep -Fqx '  hint: the folder old/tide-board-60 has neither pier-clock.rom0.bin nor pier-clock.rom0.hex; it has tide-board-60.rom0.bin, tide-board-60.rom1.bin, tide-board-60.rom2.bin' stderr
+sed 's/label: U4/label: U5/' lock-gate-sign.yaml >label.yaml
+build 2 label.yaml --near old/lock-gate-sign -o none
+holds 'another label: what is there' grep -Fqx '  hint: the folder old/lock-gate-sign has neither lock-gate-sign.U5.bin nor lock-gate-sign.U5.hex; it has lock-gate-sign.U4.bin' stderr
+mkdir many
+touch many/tide-board-60.rom0.bin many/tide.rom{0,1,2}.{bin,hex} many/tide.yaml
+build 2 pier-clock.yaml --near many -o none
+holds 'many: the first of them' grep -Fqx '  hint: the folder many has neither pier-clock.rom0.bin nor pier-clock.rom0.hex; it has tide-board-60.rom0.bin, tide.rom0.bin, tide.rom0.hex, tide.rom1.bin and 3 more' stderr
 printf 'short' >damaged/tide-board-60.rom0.bin
 build 2 tide-board-60.yaml --near damaged -o none
 holds 'a wrong size' grep -q '\[image-size\]$' stderr

@@ -104,7 +104,10 @@ refuses image-missing 'scrambled.yaml: error: there is no image for chip "U2" (L
 	scrambled.yaml U1=bin/scrambled.U1.bin
 refuses image-missing 'scrambled.yaml: error: there is no image for chip "U1" (LOCKROM)' scrambled.yaml 'odd=name/..'
 holds 'a folder without images: the names that were wanted' \
-	grep -Fqx '  hint: the folder odd=name/.. has neither scrambled.U1.bin nor scrambled.U1.hex' stderr
+	grep -Eqx '  hint: the folder odd=name/\.\. has neither scrambled\.U1\.bin nor scrambled\.U1\.hex; it has [^,]*\.(bin|hex),.*' stderr
+prove 3 scrambled.yaml nosuch
+same 'no folder: the system says so' 'nosuch: error: cannot read a folder of images: No such file or directory [file-unreadable]' \
+	"$(cat stderr)"
 refuses image-unknown-chip 'bin/scrambled.U1.bin: error: the plan has no chip "U7"' \
 	scrambled.yaml U7=bin/scrambled.U1.bin
 holds 'an unknown chip: those that there are' grep -Fqx '  hint: its chips are U1, U2' stderr

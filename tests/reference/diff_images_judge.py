@@ -124,7 +124,8 @@ def main():
 			if wanted is None:
 				continue
 			old = new.pop("before", old)
-			wanted = [change for change in wanted if change["section"] != "wiring" or edit in OTHER_MACHINE]
+			unseen = {"in words only"} | (set() if edit in OTHER_MACHINE else {"wiring"})
+			wanted = [change for change in wanted if change["section"] not in unseen]
 			new["name"] = old["name"]  # which image files are called by
 			style = random.Random(f"{seed} {edit} style") if chance.random() < 0.6 else None
 			cuts = not any(change["section"] == "frame" for change in wanted)
