@@ -137,6 +137,33 @@ edit mooring-board-counted.yaml counted.yaml 's/(region: sync, +cells: )12/\111/
 compare 1 old counted.yaml
 says '"picture", "border", "sync": "sync": 1 cell shorter (8 ticks, 0.318 us); the line is 1 cell shorter'
 
+# More lines than are aligned one by one, each of them changed, and one gone.
+cat >pier.yaml <<'PLAN'
+scanlatch: 1
+name: pier
+clock: { master: 100 MHz, cell: 1 tick }
+signals:
+  hsync: { role: horizontal sync, active: low }
+  blank: { role: blanking, active: high }
+  load: { role: plain, active: high }
+lines:
+  picture:
+    regions:
+      - { region: sync, cells: 2, assert: [hsync, blank] }
+      - { region: porch, cells: 3, assert: [blank] }
+      - { region: picture, cells: 20, assert: [load] }
+      - { region: front porch, cells: 3, assert: [blank] }
+  border: { like: picture, change: [ { region: picture, assert: [blank] } ] }
+frame: [ { repeat: 2500, line: picture }, { repeat: 90, line: border } ]
+machine: { form: line-frame, line: { state: 5 bits }, frame: { state: 12 bits } }
+chips: { line: { part: 28C64 }, frame: { part: 28C64 } }
+PLAN
+build_old pier.yaml
+edit pier.yaml pier2.yaml 's/(region: porch, cells: )3/\14/; s/(region: front porch, cells: )3/\12/; s/2500/2499/'
+compare 1 old pier2.yaml
+says '"picture": "picture", between "porch" and "front porch": 1 cell later (1 tick, 0.01 us)'
+says 'block 1, "picture": 2499 lines, was 2500 lines'
+
 # Sets: the bank that differs. Of one plan in chips with banks, the bank that is not as the others.
 build_old pilot-station.yaml
 edit pilot-station-625.yaml pilot-other.yaml 's/(region: front porch, +cells: )4/\15/'
