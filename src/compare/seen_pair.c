@@ -135,6 +135,18 @@ static void find_alike(struct pairing *pairing)
 	}
 }
 
+// Too many segments to align, but for what is alike at both ends: each with the one that is as many after the first.
+static void pair_in_place(struct pairing *pairing)
+{
+	struct alignment *segments = &pairing->seeing->segments;
+	for (size_t index = 0; index < segments->old_count && index < segments->now_count; index++) {
+		if (segments->now_of[index] != NONE || segments->old_of[index] != NONE || worth_of_segments(pairing, index, index) == 0)
+			continue;
+		segments->now_of[index] = index;
+		segments->old_of[index] = index;
+	}
+}
+
 static bool align_segments(struct pairing *pairing)
 {
 	struct seeing *seeing = pairing->seeing;
@@ -148,11 +160,13 @@ static bool align_segments(struct pairing *pairing)
 	}
 	if (!alignment_begin(steps, &seeing->segments))
 		return seen_memory(seeing);
-	if (align_lists(steps, worth_of_segments, WORTH_SAME, pairing, &seeing->segments)) {
-		find_alike(pairing);
-		return true;
-	}
-	return steps->failed ? seen_memory(seeing) : seen_refuse(seeing, "the images have too many lines that differ from the plan's");
+	const bool aligned = align_lists(steps, worth_of_segments, WORTH_SAME, pairing, &seeing->segments);
+	if (steps->failed)
+		return seen_memory(seeing);
+	if (!aligned)
+		pair_in_place(pairing);
+	find_alike(pairing);
+	return true;
 }
 
 // Where the plan's lines begin.

@@ -6,7 +6,7 @@ set -u
 
 work=$(mktemp -d) || exit 1
 trap 'rm -rf "$work"' EXIT
-cp plans/*.yaml tests/good/codes-auto.yaml tests/good/direct.yaml "$work"
+cp plans/*.yaml tests/good/codes-auto.yaml tests/good/direct.yaml tests/good/suggests-frame.yaml "$work"
 cd "$work" || exit 1
 
 # compare STATUS ARGUMENT …: leaves stdout and stderr in files, and the lines without their ends wrapped.
@@ -120,10 +120,49 @@ compare 1 old quay.yaml
 says '"picture", "border", "sync": edge between "sync" and "back porch": 1 cell later (8 ticks, 0.318 us)'
 says 'block 2, "border": 32 lines, was 33 lines'
 holds 'two stages: nothing else' grep -q 'says, 2 changes;' unwrapped
+# A picture that was moved takes all its signals with it: they have no other lead. Where border was, no pin sees edges.
+edit mooring-board.yaml moved.yaml 's/(region: back porch, +cells: )6/\17/; s/(region: front porch, cells: )2/\11/'
+compare 1 old moved.yaml
+says '"picture": "picture", between "back porch" and "front porch": 1 cell later (8 ticks, 0.318 us)'
+never ' lead '
+# Lines that are as many the other way round are no other level.
+build_old suggests-frame.yaml
+edit suggests-frame.yaml suggests.yaml 's/repeat: 2, line: dark/repeat: 3, line: dark/; s/repeat: 3, line: lit/repeat: 2, line: lit/'
+compare 1 old suggests.yaml
+says 'block 1, "dark": 3 lines, was 2 lines'
+says 'block 2, "lit": 2 lines, was 3 lines'
+never 'active high'
 build_old mooring-board-counted.yaml
 edit mooring-board-counted.yaml counted.yaml 's/(region: sync, +cells: )12/\111/'
 compare 1 old counted.yaml
 says '"picture", "border", "sync": "sync": 1 cell shorter (8 ticks, 0.318 us); the line is 1 cell shorter'
+
+# More lines than are aligned one by one, each of them changed, and one gone.
+cat >pier.yaml <<'PLAN'
+scanlatch: 1
+name: pier
+clock: { master: 100 MHz, cell: 1 tick }
+signals:
+  hsync: { role: horizontal sync, active: low }
+  blank: { role: blanking, active: high }
+  load: { role: plain, active: high }
+lines:
+  picture:
+    regions:
+      - { region: sync, cells: 2, assert: [hsync, blank] }
+      - { region: porch, cells: 3, assert: [blank] }
+      - { region: picture, cells: 20, assert: [load] }
+      - { region: front porch, cells: 3, assert: [blank] }
+  border: { like: picture, change: [ { region: picture, assert: [blank] } ] }
+frame: [ { repeat: 2500, line: picture }, { repeat: 90, line: border } ]
+machine: { form: line-frame, line: { state: 5 bits }, frame: { state: 12 bits } }
+chips: { line: { part: 28C64 }, frame: { part: 28C64 } }
+PLAN
+build_old pier.yaml
+edit pier.yaml pier2.yaml 's/(region: porch, cells: )3/\14/; s/(region: front porch, cells: )3/\12/; s/2500/2499/'
+compare 1 old pier2.yaml
+says '"picture": "picture", between "porch" and "front porch": 1 cell later (1 tick, 0.01 us)'
+says 'block 1, "picture": 2499 lines, was 2500 lines'
 
 # Sets: the bank that differs. Of one plan in chips with banks, the bank that is not as the others.
 build_old pilot-station.yaml
