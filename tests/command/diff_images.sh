@@ -182,7 +182,7 @@ build_old tide-board-60.yaml
 cp -R old damaged
 flip damaged/tide-board-60.rom2.bin $((0x1132)) 4
 compare 1 damaged tide-board-60.yaml
-holds 'a bit of a signal: one line is another' grep -Eq '^  block 3, "picture 2": gone, was 1 line$' unwrapped
+holds 'a bit of a signal: one line is another' grep -Eq '^  old block 3, "picture 2": gone, was 1 line$' unwrapped
 says 'line type "picture 2": gone, was 101 cells, 912 ticks'
 holds 'a bit of a signal: where' grep -q '^FAIL  signals ' stdout
 compare 1 tide-board-60.yaml damaged

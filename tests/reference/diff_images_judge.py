@@ -55,6 +55,9 @@ def shown(edit, plans, change, to_images):
 		# Which of regions that do the same was lengthened, no pin shows.
 		names = alike_in(plans[0], change["lines"][0], change["what"].strip('"'))
 		return [dict(change, what=f'"{name}"') for name in names]
+	if edit == "line-renamed-and-edited" and to_images:
+		# Images take the plan's names.
+		return [{key: value for key, value in change.items() if key != "lines"}]
 	if edit.startswith("region-added"):
 		# Cells that assert more may be a new region, or an old one that was changed; and images have no names.
 		return [unnamed(change)] if to_images else [change, asserts(change, "blank", "blank and lamp")]
