@@ -37,15 +37,6 @@ static unsigned count_bits(uint64_t bits)
 	return count;
 }
 
-static uint64_t sync_mask(const struct seeing *seeing)
-{
-	const int *roles = seeing->planned->plan->role_signal;
-	uint64_t mask = 0;
-	for (enum role role = ROLE_COMPOSITE_SYNC; role <= ROLE_VERTICAL_SYNC; role++)
-		mask |= roles[role] >= 0 ? (uint64_t)1 << roles[role] : 0;
-	return mask;
-}
-
 // How many signals differ in the cells that two segments have in common, from the front or from the back.
 static uint64_t count_differing(const uint64_t *left, const uint64_t *right, uint32_t cells, uint64_t mask)
 {
@@ -293,6 +284,6 @@ static bool cut_lines(struct pairing *pairing)
 
 bool seen_pair(struct seeing *seeing)
 {
-	struct pairing pairing = {.seeing = seeing, .sync = sync_mask(seeing)};
+	struct pairing pairing = {.seeing = seeing, .sync = seen_sync(seeing)};
 	return seen_number(seeing, UINT64_MAX) && list_contents(&pairing) && align_segments(&pairing) && cut_lines(&pairing);
 }

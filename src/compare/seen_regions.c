@@ -224,8 +224,8 @@ static bool is_region(const struct seeing *seeing, const struct piece *piece, si
 	const uint64_t asserted = line->regions[region].assert_mask | seeing->stretch;
 	const bool after_same = region > 0 && (line->regions[region - 1].assert_mask | seeing->stretch) == asserted;
 	const bool before_same = region + 1 < line->region_count && (line->regions[region + 1].assert_mask | seeing->stretch) == asserted;
-	return piece->cells == seeing->planned->types[planned_type].regions[region].cells && (piece->asserted | seeing->stretch) == asserted &&
-	       !after_same && !before_same;
+	const uint32_t cells = seeing->planned->types[planned_type].regions[region].cells;
+	return piece->cells == cells && (piece->asserted | seeing->stretch) == asserted && !after_same && !before_same;
 }
 
 // Reads what is left of a line between its ends; returns how many pieces that makes. False when memory is out, or there is too much.
@@ -257,9 +257,10 @@ bool seen_match_regions(struct seeing *seeing, size_t planned_type, struct piece
 	     piece_end--, region_end--)
 		list[piece_end - 1].region = region_end - 1;
 	const struct piece *last = &list[*count - 1];
-	struct reading reading = {.seeing = seeing, .planned_type = planned_type, .regions = line->regions + front, .laid = laid->regions + front, .pieces = list + front,
-	                          .piece_count = piece_end - front, .region_count = region_end - front, .first_region = front,
-	                          .cells = last->first + last->cells, .planned_cells = laid->cells, .stretch = seeing->stretch};
+	struct reading reading = {.seeing = seeing, .planned_type = planned_type, .regions = line->regions + front,
+	                          .laid = laid->regions + front, .pieces = list + front, .piece_count = piece_end - front,
+	                          .region_count = region_end - front, .first_region = front, .cells = last->first + last->cells,
+	                          .planned_cells = laid->cells, .stretch = seeing->stretch};
 	if (!read_middle(seeing, &reading, out + front, &middle))
 		return false;
 	memcpy(out, list, front * sizeof *out);

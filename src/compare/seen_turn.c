@@ -98,14 +98,12 @@ static bool turn_to(struct seeing *seeing, size_t index)
 	return true;
 }
 
-// Sync alone tells lines apart where all of them show something else.
-static uint64_t sync_signals(const struct seeing *seeing)
+uint64_t seen_sync(const struct seeing *seeing)
 {
-	static const enum role roles[] = {ROLE_COMPOSITE_SYNC, ROLE_HORIZONTAL_SYNC, ROLE_VERTICAL_SYNC};
-	uint64_t mask = seeing->cut;
-	for (size_t index = 0; index < sizeof roles / sizeof *roles; index++)
-		if (seeing->planned->plan->role_signal[roles[index]] >= 0)
-			mask |= (uint64_t)1 << seeing->planned->plan->role_signal[roles[index]];
+	const int *roles = seeing->planned->plan->role_signal;
+	uint64_t mask = 0;
+	for (enum role role = ROLE_COMPOSITE_SYNC; role <= ROLE_VERTICAL_SYNC; role++)
+		mask |= roles[role] >= 0 ? (uint64_t)1 << roles[role] : 0;
 	return mask;
 }
 
@@ -136,7 +134,8 @@ bool seen_turn(struct seeing *seeing)
 	struct turning turning;
 	if (!find_turn(seeing, &turning, UINT64_MAX))
 		return false;
-	if (turning.best_alike == 0 && !find_turn(seeing, &turning, sync_signals(seeing)))
+	// Sync alone tells lines apart where all of them show something else.
+	if (turning.best_alike == 0 && !find_turn(seeing, &turning, seen_sync(seeing)))
 		return false;
 	return turn_to(seeing, choose_turn(seeing, &turning));
 }

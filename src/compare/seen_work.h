@@ -101,6 +101,9 @@ bool seen_hold(struct seeing *seeing);
 // The signals that frames of one length show the other way round: asserted in as many cells as the plan has them not. Cannot fail.
 uint64_t seen_inverted(const struct seeing *seeing, const uint64_t *asserted, uint32_t cells);
 
+// The signals that are sync, of any kind. Cannot fail.
+uint64_t seen_sync(const struct seeing *seeing);
+
 // Gives segments of both frames their numbers, by signals of a mask. False after reporting.
 bool seen_number(struct seeing *seeing, uint64_t mask);
 
