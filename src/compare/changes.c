@@ -112,6 +112,22 @@ void add_change(struct comparing *comparing, struct change change)
 		add_line(comparing, noted, line);
 }
 
+void drop_sections(struct comparing *comparing, bool drops(enum change_section section))
+{
+	struct noted_change **link = &comparing->first;
+	comparing->last = NULL;
+	comparing->buckets = NULL;
+	while (*link != NULL) {
+		if (drops((*link)->change.section)) {
+			*link = (*link)->next;
+			comparing->count--;
+			continue;
+		}
+		comparing->last = *link;
+		link = &(*link)->next;
+	}
+}
+
 void move_sections(struct comparing *comparing, bool moves(enum change_section section), enum change_section into)
 {
 	for (struct noted_change *noted = comparing->first; noted != NULL; noted = noted->next)

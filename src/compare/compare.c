@@ -31,7 +31,7 @@ static bool holds_are_same(const struct timeline *old, const struct timeline *no
 	return same;
 }
 
-static int64_t stretch_of(const struct plan *plan, uint64_t asserted)
+int64_t stretch_of(const struct plan *plan, uint64_t asserted)
 {
 	const int signal = plan->role_signal[ROLE_STRETCH];
 	return signal >= 0 && (asserted >> signal & 1) != 0 ? plan->clock.stretch_ticks : 0;
@@ -74,8 +74,42 @@ static bool clocks_are_same(const struct clock *old, const struct clock *now)
 
 static bool timelines_are_same(const struct comparing *comparing)
 {
-	return comparing->same_clock && comparing->same_holds && all_signals_stay(comparing) &&
-	       lines_start_alike(comparing->old_timeline, comparing->now_timeline) && cells_are_same(comparing);
+	return comparing->same_loop ||
+	       (comparing->same_clock && comparing->same_holds && all_signals_stay(comparing) &&
+	       lines_start_alike(comparing->old_timeline, comparing->now_timeline) && cells_are_same(comparing));
+}
+
+// Where every pin does in every cell what it did, other regions, line types and blocks only say so in other words.
+static bool is_only_said(enum change_section section)
+{
+	return section == CHANGE_LINES || section == CHANGE_FRAME;
+}
+
+// Whether the lines that the old frame is cut into begin where those of the new one do, which begins at its cell `first`.
+static bool is_cut_alike(const struct comparing *comparing, uint32_t first)
+{
+	const struct timeline *old = comparing->old_timeline, *now = comparing->now_timeline;
+	const uint32_t from = timeline_place(old, first).line;
+	bool same = old->line_count == now->line_count;
+	for (uint32_t line = 0; same && line < now->line_count; line++)
+		same = (now->lines[line].first_cell + first) % old->cell_count == old->lines[(from + line) % old->line_count].first_cell;
+	return same;
+}
+
+// The same loop of cells, cut into other lines: then what lines and blocks are is only said in other words, and these would be all of them.
+// Where only whole blocks stand in another order, that is told as such: the frame begins with another line.
+static void compare_loops(struct comparing *comparing)
+{
+	uint32_t first = 0;
+	if (!all_signals_stay(comparing) || !frames_are_rotated(comparing, &first) || is_cut_alike(comparing, first))
+		return;
+	const struct cell_place place = timeline_place(comparing->old_timeline, first);
+	const char *where = first == 0 ? "where it began"
+	                               : keep_words(comparing, "at what was line %" PRIu32 ", cell %" PRIu32, place.line, place.cell);
+	comparing->same_loop = true;
+	drop_sections(comparing, is_only_said);
+	add_change(comparing, (struct change){.section = CHANGE_WORDS, .kind = "rotated",
+	                                      .what = keep_words(comparing, "the frame is the same loop, begun %s; its lines are cut elsewhere", where)});
 }
 
 static void compare_names(struct comparing *comparing)
@@ -96,12 +130,6 @@ static void compare_remainder(struct comparing *comparing)
 		                                      .also = "they do other things, though all that was compared is the same"});
 }
 
-// Where every pin does in every cell what it did, other regions, line types and blocks only say so in other words.
-static bool is_only_said(enum change_section section)
-{
-	return section == CHANGE_LINES || section == CHANGE_FRAME;
-}
-
 static void compare_all(struct comparing *comparing)
 {
 	compare_verdicts(comparing);
@@ -117,6 +145,8 @@ static void compare_all(struct comparing *comparing)
 	if (!comparing->failed && timelines_are_same(comparing))
 		move_sections(comparing, is_only_said, CHANGE_WORDS);
 	else if (!comparing->failed)
+		compare_loops(comparing);
+	if (!comparing->failed && !timelines_are_same(comparing))
 		compare_remainder(comparing);
 }
 

@@ -52,7 +52,8 @@ struct comparison {
 	size_t count;
 	size_t edits;             // of them those that do not follow from others: all but CHANGE_LIMITS
 	bool same_clock;          // a tick and a cell last as long
-	bool same_timeline;       // the same signals, holds and ticks in every cell of the same lines, at the same clock
+	bool same_timeline;       // the same signals, holds and ticks in every cell of the loop, at the same clock; where it begins, and how it is cut into
+	                          // lines, is told in words
 	bool same_meaning;        // no change but those of CHANGE_WORDS
 	const size_t *old_chip_of; // [now's chips]: the old plan's chip that a chip was, or SIZE_MAX
 	const size_t *line_of;     // [old's line types]: the new plan's line type that an old one is, or SIZE_MAX

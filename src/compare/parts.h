@@ -26,12 +26,15 @@ struct comparing {
 	bool *old_used, *now_used; // [line types]: the frame has lines of them
 	bool same_clock;       // a tick and a cell last as long
 	bool same_holds;       // every cell holds what it held
+	bool same_loop;        // both frames are one loop that is cut into other lines
 	size_t work_left;      // steps that alignments may still take
 	bool failed;
 };
 
 // Adds a change. One that differs from an earlier one only in its line types joins it; change.lines has one or none.
 void add_change(struct comparing *comparing, struct change change);
+// Drops the changes of the sections that `drops` picks.
+void drop_sections(struct comparing *comparing, bool drops(enum change_section section));
 // Moves the changes of the sections that `moves` picks into another.
 void move_sections(struct comparing *comparing, bool moves(enum change_section section), enum change_section into);
 // The changes in the order of sections, as an array in the arena; NULL when memory is out.
@@ -64,6 +67,13 @@ typedef uint32_t pair_worth(const void *context, size_t old, size_t now);
 bool align_lists(struct comparing *comparing, pair_worth *worth, uint32_t whole, const void *context, struct alignment *alignment);
 // Makes the arrays of an alignment; its counts are set. False when memory is out.
 bool alignment_begin(struct comparing *comparing, struct alignment *alignment);
+
+// The ticks by which a cell is longer. Cannot fail.
+int64_t stretch_of(const struct plan *plan, uint64_t asserted);
+
+// Whether both frames are one and the same loop: the same signals, holds and ticks in cells that follow each other alike. Sets *first to the
+// old frame's cell at which the new one begins. All signals must be the same. Linear time.
+bool frames_are_rotated(struct comparing *comparing, uint32_t *first);
 
 void match_signals(struct comparing *comparing);
 void match_lines(struct comparing *comparing);

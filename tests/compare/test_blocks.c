@@ -45,6 +45,27 @@ static void test_rows(void **state)
 	       "frame block-added: block 2, \"c\": new, 1 line\n", false);
 }
 
+// Lines of four cells, sync in two: the same loop, cut where sync ends, or in the middle of a line; and one cell of another.
+static void test_cut(void **state)
+{
+	(void)state;
+	static const char cut[] = "  a: { regions: [ { region: s, cells: 2 }, { region: r, cells: 2, assert: [sync] } ] }\n"
+	                          "  b: { regions: [ { region: r, cells: 4, assert: [load] } ] }\n"
+	                          "  d: { regions: [ { region: s, cells: 2 } ] }\n"
+	                          "  e: { regions: [ { region: r, cells: 2, assert: [sync] } ] }\n";
+	static const char frame[] = "  - { repeat: 3, line: a }\n  - { repeat: 2, line: b }\n";
+	assert_compared(compare_clocks("", LINES, frame, "", cut,
+	                               "  - { repeat: 2, line: a }\n  - { repeat: 1, line: d }\n  - { repeat: 2, line: b }\n  - { repeat: 1, line: e }\n"),
+	                "in words only line-removed: line type \"c\": gone, was 4 cells, 40 ticks, not in the frame\n"
+	                "in words only rotated: the frame is the same loop, begun at what was line 0, cell 2; its lines are cut elsewhere\n", true, true);
+	struct compared other =
+		compare_clocks("", LINES, frame, "", cut,
+	                       "  - { repeat: 2, line: a }\n  - { repeat: 1, line: e }\n  - { repeat: 2, line: b }\n  - { repeat: 1, line: e }\n");
+	assert_false(other.comparison->same_timeline);
+	assert_false(other.comparison->same_meaning);
+	forget(&other);
+}
+
 // Alignments.
 
 struct lists {
@@ -99,7 +120,7 @@ static void test_alignment_limit(void **state)
 int main(void)
 {
 	const struct CMUnitTest tests[] = {
-		cmocka_unit_test(test_repeats),   cmocka_unit_test(test_come_and_go), cmocka_unit_test(test_rows),
+		cmocka_unit_test(test_repeats),   cmocka_unit_test(test_come_and_go), cmocka_unit_test(test_rows), cmocka_unit_test(test_cut),
 		cmocka_unit_test(test_alignment), cmocka_unit_test(test_alignment_limit),
 	};
 	return cmocka_run_group_tests(tests, NULL, NULL);
