@@ -96,17 +96,20 @@ static bool is_cut_alike(const struct comparing *comparing, uint32_t first)
 	return same;
 }
 
-// The same loop of cells, cut into other lines: then what lines and blocks are is only said in other words, and these would be all of them.
-// Where only whole blocks stand in another order, that is told as such: the frame begins with another line.
+// The same loop of cells, cut into other lines. Where only whole blocks stand in another order, it is not taken for the same: the frame begins
+// with another line.
+static void find_loop(struct comparing *comparing)
+{
+	if (!comparing->failed && all_signals_stay(comparing) && !timelines_are_same(comparing))
+		comparing->same_loop = frames_are_rotated(comparing, &comparing->loop_cell) && !is_cut_alike(comparing, comparing->loop_cell);
+}
+
+// What lines and blocks are is only said in other words then, and these would be all of them.
 static void compare_loops(struct comparing *comparing)
 {
-	uint32_t first = 0;
-	if (!all_signals_stay(comparing) || !frames_are_rotated(comparing, &first) || is_cut_alike(comparing, first))
-		return;
-	const struct cell_place place = timeline_place(comparing->old_timeline, first);
-	const char *where = first == 0 ? "where it began"
-	                               : keep_words(comparing, "at what was line %" PRIu32 ", cell %" PRIu32, place.line, place.cell);
-	comparing->same_loop = true;
+	const struct cell_place place = timeline_place(comparing->old_timeline, comparing->loop_cell);
+	const char *where = comparing->loop_cell == 0
+		? "where it began" : keep_words(comparing, "at what was line %" PRIu32 ", cell %" PRIu32, place.line, place.cell);
 	drop_sections(comparing, is_only_said);
 	add_change(comparing, (struct change){.section = CHANGE_WORDS, .kind = "rotated",
 	                                      .what = keep_words(comparing, "the frame is the same loop, begun %s; its lines are cut elsewhere", where)});
@@ -142,11 +145,13 @@ static void compare_all(struct comparing *comparing)
 	compare_chips(comparing);
 	compare_timing(comparing);
 	compare_names(comparing);
-	if (!comparing->failed && timelines_are_same(comparing))
-		move_sections(comparing, is_only_said, CHANGE_WORDS);
-	else if (!comparing->failed)
+	if (comparing->failed)
+		return;
+	if (comparing->same_loop)
 		compare_loops(comparing);
-	if (!comparing->failed && !timelines_are_same(comparing))
+	else if (timelines_are_same(comparing))
+		move_sections(comparing, is_only_said, CHANGE_WORDS);
+	else
 		compare_remainder(comparing);
 }
 
@@ -180,6 +185,7 @@ struct comparison *comparison_create(const struct timeline *old, const struct ti
 	comparing.same_holds = holds_are_same(old, now);
 	match_fields(&comparing);
 	match_signals(&comparing);
+	find_loop(&comparing);
 	match_lines(&comparing);
 	if (!comparing.failed)
 		compare_all(&comparing);

@@ -26,7 +26,8 @@ struct comparing {
 	bool *old_used, *now_used; // [line types]: the frame has lines of them
 	bool same_clock;       // a tick and a cell last as long
 	bool same_holds;       // every cell holds what it held
-	bool same_loop;        // both frames are one loop that is cut into other lines
+	bool same_loop;        // both frames are one loop that is cut into other lines;
+	uint32_t loop_cell;    // then: the old frame's cell at which the new one begins
 	size_t work_left;      // steps that alignments may still take
 	bool failed;
 };

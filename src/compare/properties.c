@@ -248,7 +248,7 @@ static void compare_fields(struct comparing *comparing)
 			compare_field(comparing, NULL, &now->fields[index]);
 }
 
-// The same number of another width is the same state.
+// The same number of another width is the same state. A loop that begins with another cell begins in that one's state.
 static void compare_start(struct comparing *comparing)
 {
 	const struct machine_plan *old = &comparing->old->machine, *now = &comparing->now->machine;
@@ -259,7 +259,7 @@ static void compare_start(struct comparing *comparing)
 		text_put_hex(&both.old, old->start, old->line.state_bits);
 	if (now->has_start)
 		text_put_hex(&both.now, now->start, now->line.state_bits);
-	compare_both(comparing, CHANGE_MACHINE, "start", &both);
+	compare_both(comparing, comparing->same_loop ? CHANGE_WORDS : CHANGE_MACHINE, "start", &both);
 }
 
 void compare_machine(struct comparing *comparing)

@@ -249,12 +249,12 @@ holds 'picture: nothing differs' grep -q 'no line type that both frames have dif
 compare 1 --svg pilot-station.yaml kit.yaml
 holds 'picture: a set' grep -q '>bank 1<' stdout
 compare 0 --svg later.yaml images
+holds 'picture: images' xmllint --noout stdout
 # What was lifted is cut into lines elsewhere, and is the same timeline.
 "$SCANLATCH" lift later.yaml images >lifted.yaml
 compare 0 later.yaml lifted.yaml
-holds 'a lifted plan: the same timeline' grep -q ': same timeline, 3 changes in words only; ' unwrapped
+holds 'a lifted plan: the same timeline' grep -q ': same timeline, 4 changes in words only; ' unwrapped
 holds 'a lifted plan: cut elsewhere' grep -q '^  the frame is the same loop, begun at what was line 0, cell 2; its lines are cut elsewhere$' unwrapped
-holds 'picture: images' xmllint --noout stdout
 
 # JSON, against the text.
 compare 1 --json tide-board-60.yaml later.yaml
