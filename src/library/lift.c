@@ -115,6 +115,15 @@ static size_t count_differing(const struct chip *chip, const struct image *left,
 	return count;
 }
 
+// Whether what failed did so for want of memory.
+static bool is_out_of_memory(const struct diagnostics *refusals)
+{
+	for (size_t index = 0; index < diagnostics_count(refusals); index++)
+		if (diagnostics_rule(refusals, index) == RULE_OUT_OF_MEMORY)
+			return true;
+	return false;
+}
+
 // Of images that no plan gives, such as those of two stages whose lines begin in different states.
 static void report_unbuilt(scanlatch_lift *lift, const struct diagnostics *refusals, scanlatch_messages *messages)
 {
@@ -135,7 +144,7 @@ static bool compare_images(scanlatch_lift *lift, struct reread *reread, scanlatc
 	struct table *table = table_create(reread->timeline, reread->diagnostics);
 	struct image *made = arena_array(reread->arena, plan->chip_count, sizeof *made);
 	const struct table *tables[1] = {table};
-	bool good = made != NULL && (table == NULL || images_fill(tables, 1, reread->arena, made));
+	bool good = made != NULL && (table == NULL ? !is_out_of_memory(reread->diagnostics) : images_fill(tables, 1, reread->arena, made));
 	if (good && table == NULL)
 		report_unbuilt(lift, reread->diagnostics, messages);
 	for (size_t chip = 0; good && table != NULL && lift->lift->options.near && chip < plan->chip_count; chip++) {
@@ -174,6 +183,8 @@ static bool verify(scanlatch_lift *lift, scanlatch_messages *messages)
 		reread_plan(&reread, lift);
 	else
 		report_memory(messages);
+	if (good && is_out_of_memory(reread.diagnostics))
+		good = report_memory(messages);
 	if (good && (reread.timeline == NULL || !lays_out(reread.timeline, lift->lift))) {
 		good = false;
 		report_refusal(lift, reread.diagnostics, messages);

@@ -99,11 +99,13 @@ void text_put_flow(struct text *out, const struct node *node)
 	}
 }
 
-static size_t flow_length(const struct node *node)
+// What is measured for `out`, which fails with it.
+static size_t flow_length(struct text *out, const struct node *node)
 {
 	struct text text = {0};
 	text_put_flow(&text, node);
 	const size_t length = text.length;
+	out->failed = out->failed || text.failed;
 	text_release(&text);
 	return length;
 }
@@ -156,7 +158,7 @@ static void put_list(struct text *out, const struct node *list)
 {
 	for (size_t index = 0; index < list->count; index++) {
 		const struct node *item = list->items[index];
-		if (item->kind != NODE_MAPPING || item->count == 0 || flow_length(item) <= FLOW_CHARACTERS) {
+		if (item->kind != NODE_MAPPING || item->count == 0 || flow_length(out, item) <= FLOW_CHARACTERS) {
 			text_put(out, "  - ");
 			text_put_flow(out, item);
 			text_put(out, "\n");
@@ -170,7 +172,7 @@ static void put_list(struct text *out, const struct node *list)
 void view_board_key(struct text *out, const char *key, const struct node *node)
 {
 	const bool is_mapping = node->kind == NODE_MAPPING && node->count > 0, is_list = node->kind == NODE_LIST && node->count > 0;
-	const bool is_short = is_mapping && strcmp(key, "clock") != 0 && all_scalars(node) && flow_length(node) <= FLOW_CHARACTERS;
+	const bool is_short = is_mapping && strcmp(key, "clock") != 0 && all_scalars(node) && flow_length(out, node) <= FLOW_CHARACTERS;
 	text_printf(out, "%s:", key);
 	if ((is_mapping && !is_short) || is_list) {
 		text_put(out, "\n");

@@ -158,21 +158,23 @@ static void put_shown(struct text *out, const struct lift *lift, const struct li
 		text_printf(out, ", stretch: %u", (unsigned)region->stretched);
 }
 
-static size_t shown_length(const struct lift *lift, const struct lift_region *region)
+// What is measured for `out`, which fails with it.
+static size_t shown_length(struct text *out, const struct lift *lift, const struct lift_region *region)
 {
 	struct text text = {0};
 	put_shown(&text, lift, region);
 	const size_t length = text.length;
+	out->failed = out->failed || text.failed;
 	text_release(&text);
 	return length;
 }
 
-static struct widths measure(const struct lift *lift, const struct lift_type *type)
+static struct widths measure(struct text *out, const struct lift *lift, const struct lift_type *type)
 {
 	struct widths widths = {0};
 	for (size_t index = 0; index < type->region_count; index++) {
 		const struct lift_region *region = &type->regions[index];
-		const size_t shown = shown_length(lift, region);
+		const size_t shown = shown_length(out, lift, region);
 		if (strlen(region->name) > widths.name)
 			widths.name = strlen(region->name);
 		if (digits_of(region->cells) > widths.cells)
@@ -198,7 +200,7 @@ static void put_region(struct text *out, const struct lift *lift, const struct l
 	put_shown(out, lift, region);
 	if (region->hold_count > 0) {
 		text_put(out, ",");
-		put_padding(out, shown_length(lift, region), widths->shown);
+		put_padding(out, shown_length(out, lift, region), widths->shown);
 		put_holds(out, region);
 	}
 	text_put(out, " }\n");
@@ -209,7 +211,7 @@ static void put_lines(struct text *out, const struct lift *lift)
 	text_put(out, "lines:\n");
 	for (size_t index = 0; index < lift->type_count; index++) {
 		const struct lift_type *type = &lift->types[index];
-		const struct widths widths = measure(lift, type);
+		const struct widths widths = measure(out, lift, type);
 		text_printf(out, "  %s:\n    cells: %u\n    regions:\n", type->name, (unsigned)type->cells);
 		for (size_t region = 0; region < type->region_count; region++)
 			put_region(out, lift, &type->regions[region], &widths);

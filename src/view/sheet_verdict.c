@@ -108,5 +108,6 @@ void sheet_proofs(struct text *out, const struct proofs *proofs)
 		counting.bytes[counting.length - 1] = '\0'; // it ends a line for terminals
 	if (counting.length > 0)
 		page_element(out, "p", "", "%s", counting.bytes);
+	out->failed = out->failed || counting.failed;
 	text_release(&counting);
 }
