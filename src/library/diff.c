@@ -53,6 +53,11 @@ static const char *failed_proofs(struct arena *arena, const struct side *side, s
 	return kept;
 }
 
+static const char *musts_words(struct arena *arena, const char *failed)
+{
+	return failed[0] == '\0' ? "all hold, the frame closes" : arena_format(arena, "FAIL: %s", failed);
+}
+
 static bool name_failures(struct arena *arena, const struct side *old, size_t before, const struct side *now, size_t after,
                           struct plan_difference *plan)
 {
@@ -60,7 +65,11 @@ static bool name_failures(struct arena *arena, const struct side *old, size_t be
 	plan->now_musts = failed_proofs(arena, now, after, true);
 	plan->old_advice = failed_proofs(arena, old, before, false);
 	plan->now_advice = failed_proofs(arena, now, after, false);
-	return plan->old_musts != NULL && plan->now_musts != NULL && plan->old_advice != NULL && plan->now_advice != NULL;
+	if (plan->old_musts == NULL || plan->now_musts == NULL || plan->old_advice == NULL || plan->now_advice == NULL)
+		return false;
+	plan->old_words = musts_words(arena, plan->old_musts);
+	plan->now_words = musts_words(arena, plan->now_musts);
+	return plan->old_words != NULL && plan->now_words != NULL;
 }
 
 // All banks that show the same two members as the first.
@@ -118,7 +127,19 @@ static bool judge_images(struct arena *arena, const struct side *read, size_t me
 {
 	plan->images = read->proofs->proofs[member];
 	plan->images_musts = is_old ? plan->old_musts : plan->now_musts;
+	plan->images_words = is_old ? plan->old_words : plan->now_words;
 	return plan->images_musts[0] == '\0' || see_images(arena, read, member, plan);
+}
+
+static const char *plan_name(const struct side *side, size_t member)
+{
+	return member != SIZE_MAX ? side->plan->members[member].plan->name : NULL;
+}
+
+static void name_plans(const struct side *old, size_t before, const struct side *now, size_t after, struct plan_difference *plan)
+{
+	plan->old_plan = plan_name(old, before);
+	plan->now_plan = plan_name(now, after);
 }
 
 static bool compare_members(struct arena *arena, const struct side *old, const struct side *now, unsigned bank, struct plan_difference *plan)
@@ -130,8 +151,10 @@ static bool compare_members(struct arena *arena, const struct side *old, const s
 		return false;
 	if (before == SIZE_MAX || after == SIZE_MAX) {
 		plan->only = before == SIZE_MAX ? "new" : "old";
+		name_plans(old, before, now, after, plan);
 		return true;
 	}
+	name_plans(old, before, now, after, plan);
 	if (!name_failures(arena, old, before, now, after, plan) ||
 	    (alone && !judge_images(arena, old_was_read ? old : now, before, old_was_read, plan)))
 		return false;
@@ -180,8 +203,8 @@ static struct chip_difference compare_chip(const struct difference *difference, 
 		return result;
 	if (strcmp(old->plan->plan->chips[before].label, chip->label) != 0)
 		result.old_label = old->plan->plan->chips[before].label;
-	if (old->images->images[before].length != result.bytes)
-		result.fate = CHIP_OTHER_SIZE;
+	if (strcmp(old->plan->plan->chips[before].part->name, chip->part->name) != 0 || old->images->images[before].length != result.bytes)
+		result.fate = CHIP_OTHER_PART;
 	else
 		compare_bytes(&old->images->images[before], &now->images->images[index], &result);
 	return result;
@@ -224,6 +247,61 @@ static bool compare_chips(struct scanlatch_difference *result, const struct side
 	return true;
 }
 
+// A set's own bank of a number: the name of its plan; NULL where the set lists none.
+static const char *listed_plan(const struct side *side, unsigned number)
+{
+	const struct set *set = side->plan->set->set;
+	for (size_t index = 0; index < set->bank_count; index++)
+		if (set->banks[index].number == number)
+			return plan_name(side, index);
+	return NULL;
+}
+
+static const char *or_null(const char *words)
+{
+	return words[0] != '\0' ? words : NULL;
+}
+
+// Adds a change of words if they differ; NULL: there were none, or are none.
+static void add_set_change(struct difference *difference, struct change *changes, const char *what, const char *old, const char *now)
+{
+	if (old == now || (old != NULL && now != NULL && strcmp(old, now) == 0))
+		return;
+	changes[difference->set_change_count++] = (struct change){
+		.section = CHANGE_WORDS, .kind = old == NULL ? "added" : now == NULL ? "removed" : "changed", .what = what, .old = old, .now = now};
+}
+
+// Banks of both sets that one lists and the other does not, in which that one's repeats bank 0.
+static bool compare_banks(struct scanlatch_difference *result, const struct side *old, const struct side *now, struct change *changes)
+{
+	for (unsigned bank = 0; bank < banks_of(old, now); bank++) {
+		const char *before = listed_plan(old, bank), *after = listed_plan(now, bank);
+		const bool both = shown_in(old, bank) != SIZE_MAX && shown_in(now, bank) != SIZE_MAX;
+		if (!both || (before == NULL) == (after == NULL))
+			continue;
+		const char *what = arena_format(result->arena, "bank %u", bank);
+		if (what == NULL)
+			return false;
+		add_set_change(&result->difference, changes, what, before != NULL ? before : "a repeat of bank 0", after != NULL ? after : "a repeat of bank 0");
+	}
+	return true;
+}
+
+static bool compare_sets(struct scanlatch_difference *result, const struct side *old, const struct side *now)
+{
+	struct difference *difference = &result->difference;
+	if (old->plan == now->plan || old->plan->set == NULL || now->plan->set == NULL)
+		return true;
+	const struct set *before = old->plan->set->set, *after = now->plan->set->set;
+	struct change *changes = arena_array(result->arena, 2 + banks_of(old, now), sizeof *changes);
+	if (changes == NULL)
+		return false;
+	difference->set_changes = changes;
+	add_set_change(difference, changes, "the set's name", before->name, after->name);
+	add_set_change(difference, changes, "the set's note", or_null(before->note), or_null(after->note));
+	return compare_banks(result, old, now, changes);
+}
+
 static bool name_sides(struct scanlatch_difference *result, const char *old_name, const char *now_name)
 {
 	result->difference.old_name = printable_base_name(result->arena, old_name);
@@ -234,7 +312,7 @@ static bool name_sides(struct scanlatch_difference *result, const char *old_name
 static bool compare_sides(struct scanlatch_difference *result, const struct side *old, const struct side *now)
 {
 	result->difference.alone = old->plan == now->plan;
-	return compare_plans(result, old, now) && compare_chips(result, old, now);
+	return compare_plans(result, old, now) && compare_chips(result, old, now) && compare_sets(result, old, now);
 }
 
 scanlatch_difference *scanlatch_compare(const char *old_name, const scanlatch_proofs *old, const char *new_name, const scanlatch_proofs *now)

@@ -23,10 +23,15 @@ bool difference_found(const struct difference *difference)
 	return false;
 }
 
+bool same_timeline(const struct plan_difference *plan)
+{
+	return plan->comparison != NULL && plan->unseen == NULL && plan->comparison->same_timeline;
+}
+
 bool same_timelines(const struct difference *difference)
 {
 	for (size_t index = 0; index < difference->plan_count; index++)
-		if (difference->plans[index].comparison == NULL || !difference->plans[index].comparison->same_timeline)
+		if (!same_timeline(&difference->plans[index]))
 			return false;
 	return true;
 }
@@ -41,7 +46,7 @@ bool same_images(const struct difference *difference)
 
 static size_t count_edits(const struct difference *difference)
 {
-	size_t count = 0;
+	size_t count = difference->set_change_count;
 	for (size_t index = 0; index < difference->plan_count; index++)
 		count += difference->plans[index].comparison != NULL ? difference->plans[index].comparison->edits : 1;
 	return count;
@@ -72,16 +77,11 @@ void put_difference_headline(struct text *out, const struct difference *differen
 	text_put(out, same_images(difference) ? "; the images are the same bytes" : "; the images are not the same bytes");
 }
 
-static const char *musts_words(const char *failed)
-{
-	return failed[0] == '\0' ? "all hold, the frame closes" : failed;
-}
-
 struct fact musts_fact(const struct plan_difference *plan)
 {
 	if (plan->images != NULL)
-		return (struct fact){"musts in the images", NULL, musts_words(plan->images_musts), false};
-	return (struct fact){"musts", musts_words(plan->old_musts), musts_words(plan->now_musts), strcmp(plan->old_musts, plan->now_musts) == 0};
+		return (struct fact){"musts in the images", NULL, plan->images_words, false};
+	return (struct fact){"musts", plan->old_words, plan->now_words, strcmp(plan->old_musts, plan->now_musts) == 0};
 }
 
 struct fact unlisted_fact(const struct plan_difference *plan)
@@ -113,7 +113,7 @@ void put_chip_fate(struct text *out, const struct chip_difference *chip)
 	case CHIP_OTHER_BYTES: break;
 	case CHIP_NEW: text_printf(out, "is new, burn its %zu bytes", chip->bytes); break;
 	case CHIP_GONE: text_put(out, "is not used any more"); break;
-	case CHIP_OTHER_SIZE: text_printf(out, "is another part, burn its %zu bytes", chip->bytes); break;
+	case CHIP_OTHER_PART: text_printf(out, "is another part, burn its %zu bytes", chip->bytes); break;
 	}
 	if (chip->fate == CHIP_BURN || chip->fate == CHIP_OTHER_BYTES)
 		text_printf(out, "%zu of %zu bytes differ, the first at 0x%zX", chip->differing, chip->bytes, chip->first);
@@ -125,6 +125,15 @@ const char *chips_advice(const struct difference *difference)
 		if (difference->chips[index].fate == CHIP_OTHER_BYTES)
 			return "no chip must be burned again, for either side's do the same; but do not mix them: burn all that differ, or none";
 	return NULL;
+}
+
+static void put_bank_plans(struct text *out, const struct plan_difference *plan)
+{
+	const char *name = plan->now_plan != NULL ? plan->now_plan : plan->old_plan;
+	text_printf(out, " (%s", name);
+	if (plan->old_plan != NULL && strcmp(plan->old_plan, name) != 0)
+		text_printf(out, ", was %s", plan->old_plan);
+	text_put(out, ")");
 }
 
 void put_bank_numbers(struct text *out, const struct plan_difference *plan)
@@ -140,6 +149,7 @@ void put_bank_numbers(struct text *out, const struct plan_difference *plan)
 			index = last;
 		}
 	}
+	put_bank_plans(out, plan);
 }
 
 #define WRAPPED_INDENT 4
@@ -242,6 +252,15 @@ static void put_chips(struct report *report, const struct difference *difference
 	}
 }
 
+// What a set is, apart from the plans of its banks.
+static void put_set(struct report *report, const struct difference *difference)
+{
+	if (difference->set_change_count > 0)
+		text_put(report->out, "set\n");
+	for (size_t index = 0; index < difference->set_change_count; index++)
+		put_change(report, NULL, &difference->set_changes[index]);
+}
+
 static void put_changes(struct report *report, const struct comparison *comparison)
 {
 	unsigned section = CHANGE_LIMITS;
@@ -282,6 +301,7 @@ void view_difference(struct text *out, const struct difference *difference)
 	for (size_t index = 0; index < difference->plan_count; index++)
 		put_facts(&report, &difference->plans[index]);
 	put_chips(&report, difference);
+	put_set(&report, difference);
 	for (size_t index = 0; index < difference->plan_count; index++)
 		put_plan(&report, &difference->plans[index]);
 	out->failed = out->failed || report.words.failed;

@@ -15,7 +15,7 @@ enum chip_fate {
 	CHIP_OTHER_BYTES,  // the same, but all chips of either side do what the other's do
 	CHIP_NEW,
 	CHIP_GONE,
-	CHIP_OTHER_SIZE    // the part has another capacity now
+	CHIP_OTHER_PART    // in its socket
 };
 
 struct chip_difference {
@@ -31,11 +31,14 @@ struct chip_difference {
 struct plan_difference {
 	const uint32_t *banks;         // [bank_count] that show the pair; none for plans alone
 	size_t bank_count;
+	const char *old_plan, *now_plan; // then: the names of the plans that they show; NULL where the set has no such banks
 	struct comparison *comparison; // NULL where only one of the two has the banks
 	const char *only;              // then: which, in words
 	const char *old_musts, *now_musts;   // names of proofs that fail, of musts and of advice, joined by ", "; "" if none
+	const char *old_words, *now_words;   // of the musts: "FAIL: colour", or that all hold
 	const char *old_advice, *now_advice;
 	const struct proofs *images;   // where a plan is compared with images that were read: their proofs; otherwise NULL
+	const char *images_words;
 	const char *images_musts;      // then: of old_musts and now_musts, those of the images
 	struct seen *seen;             // then, where a must fails: what they do, which the comparison has for their side; NULL if it
 	const char *unseen;            // cannot be read out of them: why, in words
@@ -47,6 +50,8 @@ struct difference {
 	size_t plan_count;
 	const struct chip_difference *chips;
 	size_t chip_count;
+	const struct change *set_changes; // of two sets: name, note, banks that came or went; words, for what banks show is compared
+	size_t set_change_count;
 	bool alone;            // the plans are one and the same: a plan and images were compared
 };
 
@@ -77,7 +82,8 @@ bool view_difference_svg(struct text *out, const struct picture *picture, const 
 //                "changes": [ { "section", "kind", "lines": [names of the line types that it is of; only in section "lines"], "what", "old",
 //                               "new", "also": what goes with it, "cells": later or longer, "ticks": TICKS, exact time shift (_s, _us);
 //                               "words": all of it in a sentence } ] } ],
-//   "chips": [ { "label", "old_label" (where it had another), "fate": "stays", "burn", "other bytes", "new", "gone" or "other size", "bytes",
+//   "set": [ changes as above, of the set alone; only of two sets ],
+//   "chips": [ { "label", "old_label" (where it had another), "fate": "stays", "burn", "other bytes", "new", "gone" or "other part", "bytes",
 //                "differing", "first" } ] }
 // What is not there is left out. A new reference; NULL when memory is out.
 json_t *view_difference_json(const struct difference *difference);
@@ -98,10 +104,11 @@ void put_only(struct text *out, const struct plan_difference *plan);
 // "burn it again, …". What follows on all chips, in words; NULL if nothing does.
 void put_chip_fate(struct text *out, const struct chip_difference *chip);
 const char *chips_advice(const struct difference *difference);
-// "bank 0", "banks 0, 2 and 3".
+// "bank 0 (harbour)", "banks 0, 2 and 3 (harbour, was pier)".
 void put_bank_numbers(struct text *out, const struct plan_difference *plan);
 // Whether facts and verdicts are of two machines: of images, if what they do was read out of them.
 bool tells_facts(const struct plan_difference *plan);
+bool same_timeline(const struct plan_difference *plan);
 bool same_timelines(const struct difference *difference);
 bool same_images(const struct difference *difference);
 

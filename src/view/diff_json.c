@@ -102,7 +102,7 @@ static json_t *plan_json(const struct plan_difference *plan)
 		json_put(&object, "only", json_string(plan->only));
 		return object;
 	}
-	json_put(&object, "same_timeline", json_boolean(plan->comparison->same_timeline));
+	json_put(&object, "same_timeline", json_boolean(same_timeline(plan)));
 	json_put(&object, "musts", both_json(plan->old_musts, plan->now_musts));
 	json_put(&object, "advice", both_json(plan->old_advice, plan->now_advice));
 	put_string(&object, "changes_unknown", plan->unseen);
@@ -114,7 +114,7 @@ static json_t *chip_json(const struct chip_difference *chip)
 {
 	static const char *const fates[] = {
 		[CHIP_STAYS] = "stays", [CHIP_BURN] = "burn", [CHIP_OTHER_BYTES] = "other bytes",
-		[CHIP_NEW] = "new",     [CHIP_GONE] = "gone", [CHIP_OTHER_SIZE] = "other size",
+		[CHIP_NEW] = "new",     [CHIP_GONE] = "gone", [CHIP_OTHER_PART] = "other part",
 	};
 	json_t *object = json_object();
 	json_put(&object, "label", json_string(chip->label));
@@ -126,6 +126,14 @@ static json_t *chip_json(const struct chip_difference *chip)
 		json_put(&object, "first", json_integer((json_int_t)chip->first));
 	}
 	return object;
+}
+
+static json_t *set_json(const struct difference *difference)
+{
+	json_t *changes = json_array();
+	for (size_t index = 0; index < difference->set_change_count; index++)
+		json_append(&changes, change_json(NULL, &difference->set_changes[index]));
+	return changes;
 }
 
 json_t *view_difference_json(const struct difference *difference)
@@ -141,6 +149,8 @@ json_t *view_difference_json(const struct difference *difference)
 	for (size_t index = 0; index < difference->chip_count; index++)
 		json_append(&chips, chip_json(&difference->chips[index]));
 	json_put(&object, "plans", plans);
+	if (difference->set_change_count > 0)
+		json_put(&object, "set", set_json(difference));
 	json_put(&object, "chips", chips);
 	return object;
 }

@@ -111,12 +111,28 @@ static void put_chips(struct page *page, const struct difference *difference)
 	text_put(page->out, "\n");
 }
 
+static void begin_changes(struct page *page)
+{
+	text_put(page->out, "| | what | change |\n|---|---|---|\n");
+}
+
+static void put_set(struct page *page, const struct difference *difference)
+{
+	if (difference->set_change_count == 0)
+		return;
+	text_put(page->out, "### the set\n\n");
+	begin_changes(page);
+	for (size_t index = 0; index < difference->set_change_count; index++)
+		put_change(page, NULL, &difference->set_changes[index]);
+	text_put(page->out, "\n");
+}
+
 static void put_changes(struct page *page, const struct plan_difference *plan)
 {
 	if (plan->comparison == NULL || plan->comparison->edits == 0)
 		return;
 	put_heading(page, plan, "changes in ");
-	text_put(page->out, "| | what | change |\n|---|---|---|\n");
+	begin_changes(page);
 	for (size_t index = 0; index < plan->comparison->count; index++)
 		if (plan->comparison->changes[index].section != CHANGE_LIMITS)
 			put_change(page, plan->comparison, &plan->comparison->changes[index]);
@@ -132,6 +148,7 @@ void view_difference_markdown(struct text *out, const struct difference *differe
 	for (size_t index = 0; index < difference->plan_count; index++)
 		put_facts(&page, &difference->plans[index]);
 	put_chips(&page, difference);
+	put_set(&page, difference);
 	for (size_t index = 0; index < difference->plan_count; index++)
 		put_changes(&page, &difference->plans[index]);
 	out->failed = out->failed || page.words.failed;

@@ -73,6 +73,14 @@ bool change_is_of_line(const struct change *change, const char *name)
 	return false;
 }
 
+static void draw_set(struct diff_drawing *drawing, const struct difference *difference)
+{
+	size_t count = 0;
+	for (size_t index = 0; index < difference->set_change_count; index++)
+		draw_change(drawing, NULL, &difference->set_changes[index], &count);
+	draw_more(drawing, count);
+}
+
 // The chips, and what the machine does.
 static void draw_chips(struct diff_drawing *drawing, const struct difference *difference)
 {
@@ -89,9 +97,11 @@ static void draw_chips(struct diff_drawing *drawing, const struct difference *di
 
 static void draw_facts(struct diff_drawing *drawing, const struct plan_difference *plan)
 {
-	const struct fact musts = musts_fact(plan);
+	const struct fact musts = musts_fact(plan), unlisted = unlisted_fact(plan);
 	draw_fact(drawing, &musts);
-	for (size_t index = 0; plan->images == NULL && index < plan->comparison->fact_count; index++)
+	if (unlisted.what != NULL)
+		draw_fact(drawing, &unlisted);
+	for (size_t index = 0; tells_facts(plan) && index < plan->comparison->fact_count; index++)
 		if (!plan->comparison->facts[index].same)
 			draw_fact(drawing, &plan->comparison->facts[index]);
 }
@@ -225,7 +235,7 @@ static bool draw_plan(struct diff_drawing *drawing, const struct plan_difference
 	}
 	draw_facts(drawing, plan);
 	draw_general(drawing, plan->comparison);
-	return draw_lines(drawing, plan->comparison);
+	return plan->unseen != NULL || draw_lines(drawing, plan->comparison);
 }
 
 static void draw_foot(struct diff_drawing *drawing)
@@ -247,6 +257,7 @@ static bool draw_body(struct diff_drawing *drawing, const struct difference *dif
 	put_difference_headline(&drawing->words, difference);
 	draw_words(drawing, "title", SVG_TITLE_SIZE, PX(48), 0);
 	draw_chips(drawing, difference);
+	draw_set(drawing, difference);
 	for (size_t index = 0; drawn && index < difference->plan_count; index++)
 		drawn = draw_plan(drawing, &difference->plans[index]);
 	draw_foot(drawing);

@@ -140,10 +140,10 @@ says 'subcarrier: MISSED (3.579545 MHz by an exact clock, 3.579188 to 3.579903 a
 # Colour and musts that fail.
 edit tide-board-60.yaml outofstep.yaml 's/, stretch: auto//; s/, stretch: 1 / /'
 compare 1 tide-board-60.yaml outofstep.yaml
-holds 'a must fails' grep -q '^  musts: colour, was all hold, the frame closes$' stdout
+holds 'a must fails' grep -q '^  musts: FAIL: colour, was all hold, the frame closes$' stdout
 holds 'colour is out of step' grep -q '^  colour: NOT in step as asked, 909/4 (227.25) cycles a line' stdout
 compare 1 outofstep.yaml tide-board-60.yaml
-holds 'a must holds again' grep -q '^  musts: all hold, the frame closes, was colour$' stdout
+holds 'a must holds again' grep -q '^  musts: all hold, the frame closes, was FAIL: colour$' stdout
 
 # Clocks that differ: ticks and times by the new one.
 edit later.yaml clock.yaml 's/master: 315.22 MHz/master: 14 MHz/; s/, stretch: auto/, stretch: 1/; s/phase: every line/phase: free/; s/subcarrier: master . 4/subcarrier: 315\/88 MHz/; s/time: 4.7 us/cells: 7/; s/time: 2.51 us/cells: 4/'
@@ -167,9 +167,9 @@ says 'U7: was U4; stays as it is'
 edit pilot-station-625.yaml pilot-other.yaml 's/(region: front porch, +cells: )4/\15/'
 sed 's/pilot-station-625/pilot-other/' pilot-station.yaml >kit.yaml
 compare 1 pilot-station.yaml kit.yaml
-holds 'set: bank 0 is the same' grep -q '^bank 0$' stdout
-holds 'set: bank 1 has changes' grep -q '^changes in bank 1$' stdout
-holds 'set: bank 0 has none' sh -c '! grep -q "^changes in bank 0$" stdout'
+holds 'set: bank 0 is the same' grep -q '^bank 0 (pilot-station-525)$' stdout
+holds 'set: bank 1 has changes' grep -q '^changes in bank 1 (pilot-station-625)$' stdout
+holds 'set: bank 0 has none' sh -c '! grep -q "^changes in bank 0 " stdout'
 says '"picture", "border": "sync", between "front porch" and "back porch": 1 cell later (6 ticks, 0.444 us)'
 compare 0 pilot-station.yaml pilot-station.yaml
 sed 's/bank: 1 bit/bank: 2 bits/' pilot-station.yaml | sed 's/28C010/27C020/' >four.yaml
@@ -177,11 +177,28 @@ for file in pilot-station-525 pilot-station-625; do sed 's/28C010, speed: 150/27
 sed -i 's/: pilot-station-/: four-pilot-station-/g' four.yaml
 compare 1 pilot-station.yaml four.yaml
 holds 'set: banks that only one has' grep -q '^  only the new set has them$' stdout
-holds 'set: they are named' grep -q '^banks 2 and 3$' stdout
+holds 'set: they are named' grep -q '^banks 2 and 3 (pilot-station-525)$' stdout
 compare 1 four.yaml pilot-station.yaml
 holds 'set: banks that are gone' grep -q '^  only the old set has them$' stdout
 compare 1 pilot-station.yaml pilot-station-525.yaml
-holds 'a plan against a set' grep -q '^changes in bank 1$' stdout
+holds 'a plan against a set' grep -q '^changes in bank 1 (pilot-station-525, was pilot-station-625)$' stdout
+# What a set is apart from its plans: name and note are words; a bank that is not listed any more repeats bank 0.
+edit pilot-station.yaml named.yaml 's/^name: .*/name: pilot-kit\nnote: for two harbours/'
+compare 0 pilot-station.yaml named.yaml
+holds 'set: words only' grep -q ': same timeline, 2 changes in words only; the images are the same bytes$' unwrapped
+holds 'set: its note' grep -q "^  the set's note: new, for two harbours\$" stdout
+holds 'set: its name' grep -q "^  the set's name: pilot-kit, was pilot-station\$" stdout
+edit pilot-station.yaml single.yaml 's/, 1: pilot-station-625.yaml//'
+compare 1 pilot-station.yaml single.yaml
+holds 'set: a bank that is gone' grep -q '^  bank 1: a repeat of bank 0, was pilot-station-625$' stdout
+holds 'set: what the bank shows' grep -q '^bank 1 (pilot-station-525, was pilot-station-625)$' stdout
+compare 1 --markdown single.yaml pilot-station.yaml
+holds 'set, Markdown: a bank that came' grep -q '^| in words only | bank 1 | pilot-station-625, was a repeat of bank 0 |$' stdout
+holds 'set, picture: a bank that came' sh -c '"$SCANLATCH" diff --svg single.yaml pilot-station.yaml | grep -q ">bank 1: pilot-station-625, was a repeat of bank 0<"'
+# Another part of the same size goes into the socket.
+sed 's/28C010/27C010/' tide-board-60.yaml >part.yaml
+compare 1 tide-board-60.yaml part.yaml
+says 'rom0: is another part, burn its 131072 bytes'
 
 # Images of the other side.
 "$SCANLATCH" build tide-board-60.yaml -o images >/dev/null
@@ -190,7 +207,7 @@ same 'images are the same' 'tide-board-60.yaml to images: the images do what the
 compare 0 images/ tide-board-60.yaml
 "$SCANLATCH" build later.yaml -o images >/dev/null
 compare 1 images tide-board-60.yaml
-holds 'images of an older plan: a must fails' grep -q '^  musts in the images: signals$' stdout
+holds 'images of an older plan: a must fails' grep -q '^  musts in the images: FAIL: signals$' stdout
 holds 'images of an older plan: which chip' grep -q '^  rom2: burn it again, 1036 of 131072 bytes differ' stdout
 holds 'images of an older plan: where' grep -q '^FAIL  signals ' stdout
 compare 1 --json images tide-board-60.yaml
@@ -234,7 +251,7 @@ same 'Markdown' '**tide-board-60.yaml to later.yaml: another timeline, 1 change;
 compare 0 --markdown tide-board-60.yaml note.yaml
 holds 'Markdown: escaped' grep -Fq 'tides?and \<b\>, was Tide' stdout
 compare 1 --markdown pilot-station.yaml kit.yaml
-holds 'Markdown: a set' grep -q '^### changes in bank 1$' stdout
+holds 'Markdown: a set' grep -q '^### changes in bank 1 (pilot-station-625)$' stdout
 
 # A picture: tests/reference/diff.sh reads such pictures back. Nothing that a plan says is markup, and what is too much is left out.
 compare 1 --svg tide-board-60.yaml later.yaml
@@ -247,7 +264,7 @@ compare 0 --svg tide-board-60.yaml note.yaml
 holds 'picture: XML whatever the words' xmllint --noout stdout
 holds 'picture: nothing differs' grep -q 'no line type that both frames have differs at the pins' stdout
 compare 1 --svg pilot-station.yaml kit.yaml
-holds 'picture: a set' grep -q '>bank 1<' stdout
+holds 'picture: a set' grep -q '>bank 1 (pilot-station-625)<' stdout
 compare 0 --svg later.yaml images
 holds 'picture: images' xmllint --noout stdout
 # What was lifted is cut into lines elsewhere, and is the same timeline.

@@ -118,7 +118,7 @@ quiet git checkout -q .
 # A set: its plans are those of the working tree.
 sed -i 's/1: pilot-station-625.yaml/1: pilot-station-525.yaml/' pilot-station.yaml
 run 0 git diff
-holds 'a set: bank 1' grep -q '^changes in bank 1$' "$work/stdout"
+holds 'a set: bank 1' grep -q '^changes in bank 1 (pilot-station-525, was pilot-station-625)$' "$work/stdout"
 same 'a set: no words but these' '' "$(cat "$work/stderr")"
 quiet git checkout -q .
 

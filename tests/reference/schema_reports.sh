@@ -138,6 +138,10 @@ for plan in plans/pilot-station-*.yaml; do
 	sed 's/28C010, speed: 150 ns/39SF020A, speed: 70 ns/' "$plan" >"$work/plans/$(basename "$plan")"
 done
 sed 's/^bank: .*/bank: 2 bits/' plans/pilot-station.yaml >"$work/plans/wider.yaml"
+mkdir "$work/noted"
+cp plans/pilot-station-525.yaml plans/pilot-station-625.yaml "$work/noted"
+sed 's/^name: .*/&\nnote: for two harbours/' plans/pilot-station.yaml >"$work/noted/pilot-station.yaml"
+report noted.diff diff plans/pilot-station.yaml "$work/noted/pilot-station.yaml"
 report wider.diff diff plans/pilot-station.yaml "$work/plans/wider.yaml"
 sed 's/label: U1/label: U9/' tests/good/scrambled.yaml >"$work/plans/relabelled.yaml"
 report relabelled.diff diff tests/good/scrambled.yaml "$work/plans/relabelled.yaml"
