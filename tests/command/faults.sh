@@ -112,7 +112,7 @@ done
 
 # Of build --json those of its report, which is made after the files are written.
 "$program" build plan.yaml -o reported >stdout
-whole_or_none 'build --json' 0 -400 1 100 build plan.yaml --json -o reported
+whole_or_none 'build --json' 0 -600 1 100 build plan.yaml --json -o reported
 # Of lift those of the plan that is read again, too.
 sed 's/codes: auto/codes: [1]/' plan.yaml >listed.yaml
 "$program" build listed.yaml -o listed >stdout
