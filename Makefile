@@ -45,7 +45,9 @@ PAGE_DATA = $(BUILD)/generated/page_data.c
 
 CATALOGUES = $(wildcard src/catalogue/*.yaml)
 PAGE_FILES = src/view/sheet.css src/view/sheet.js
-REPORTS = $(sort $(wildcard src/view/reports/*.json src/view/reports/shared/*.json))
+REPORT_DEFINITIONS = $(sort $(wildcard src/view/reports/shared/*.json))
+REPORT_NAMES = $(sort $(notdir $(basename $(wildcard src/view/reports/*.json))))
+REPORTS = $(REPORT_NAMES:%=src/view/reports/%.json) $(REPORT_DEFINITIONS)
 SOURCES = $(wildcard src/*/*.c src/*.c)
 PROGRAM_SOURCES = $(filter src/command/%,$(SOURCES))
 LIBRARY_SOURCES = $(filter-out src/command/%,$(SOURCES))
@@ -125,22 +127,22 @@ $(CATALOGUE_DATA): $(CATALOGUES)
 $(PAGE_DATA): $(PAGE_FILES)
 	$(call as_arrays,page,view/page_data.h,$^)
 
-# The schema of each report, and the definitions that they share: a table of names and texts, then an entry without a name.
-$(REPORT_DATA): $(REPORTS) $(BUILD)/reports
+# The schema of each report, with the definitions that it uses: a table of names and texts, then an entry without a name.
+$(REPORT_DATA): $(REPORTS) tools/report-schema.awk $(BUILD)/reports
 	@mkdir -p $(@D)
 	$(call say,DATA,$@)
 	$(QUIET){ echo '#include "view/reports.h"'; \
 	table=; \
-	for file in $(REPORTS); do \
-		name=$$(basename "$$file" .json); \
-		case $$file in */shared/*) shared=true ;; *) shared=false ;; esac; \
-		data=$$(echo "data_$${shared}_$$name" | tr - _); \
+	for name in $(REPORT_NAMES); do \
+		awk -f tools/report-schema.awk "src/view/reports/$$name.json" $(REPORT_DEFINITIONS) > $@.json || exit; \
+		data=$$(echo "data_$$name" | tr - _); \
 		echo "static const unsigned char $$data[] = {"; \
-		od -An -v -tx1 "$$file" | sed 's/ *\([0-9a-f][0-9a-f]\)/0x\1,/g'; \
+		od -An -v -tx1 $@.json | sed 's/ *\([0-9a-f][0-9a-f]\)/0x\1,/g'; \
 		echo "};"; \
-		table="$$table{\"$$name\", $$shared, $$data, sizeof $$data}, "; \
+		table="$$table{\"$$name\", $$data, sizeof $$data}, "; \
 	done; \
-	echo "const struct report_file report_files[] = {$$table{NULL, false, NULL, 0}};"; } > $@
+	echo "const struct report_schema report_schemas[] = {$$table{NULL, NULL, 0}};"; } > $@.part
+	$(QUIET)mv $@.part $@
 
 $(TEST_PROGRAMS): CLIENT_LIBRARIES = -lcmocka
 $(TEST_PROGRAMS): $(BUILD)/tests/%: tests/%.c

@@ -7,6 +7,7 @@
 
 #include "base/arena.h"
 #include "base/file.h"
+#include "base/text.h"
 #include "command/command.h"
 #include "view/figures.h"
 
@@ -65,6 +66,7 @@ struct job {
 	scanlatch_images *proved;  // read back from the bytes of the files
 	scanlatch_proofs *proofs;
 	char *report, *missed;     // of the proofs: made before anything is written, so that lack of memory writes nothing
+	const char *manifest;      // of the build's files
 	bool failed;               // a proof that counts failed
 	size_t first_file, file_count; // in the build's files
 };
@@ -133,6 +135,7 @@ static bool read_back(const struct build *build, struct job *job)
 static bool add_report_files(struct build *build, struct job *job)
 {
 	char *manifest = scanlatch_manifest(job->proofs, build->options->files);
+	job->manifest = manifest;
 	if (!add_file(build, job, NULL, "manifest.json", manifest, manifest != NULL ? strlen(manifest) : 0, manifest))
 		return false;
 	if (!build->options->listing)
@@ -296,31 +299,63 @@ static json_t *near_json(const struct job *job)
 	return list;
 }
 
+// What is reported beside the manifest.
 static json_t *job_json(const struct build *build, const struct job *job, bool written)
 {
 	json_t *document = json_object(), *files = json_array();
 	for (size_t file = job->first_file; written && file < job->first_file + job->file_count; file++)
 		json_append(&files, file_json(&build->files[file]));
-	char *manifest = scanlatch_manifest(job->proofs, build->options->files);
 	json_put(&document, "name", json_string(scanlatch_plan_name(job->plan)));
 	json_put(&document, "failed", json_boolean(job->failed));
 	json_put(&document, "written", json_boolean(written));
 	json_put(&document, "files", files);
 	if (job->old != NULL)
 		json_put(&document, "near", near_json(job));
-	json_put(&document, "manifest", manifest != NULL ? json_loads(manifest, 0, NULL) : NULL);
-	scanlatch_free(manifest);
 	return document;
+}
+
+// Puts lines, all but the first a level deeper. In JSON no text has line ends.
+static void put_deeper(struct text *out, const char *lines, size_t length)
+{
+	for (size_t at = 0; at < length; at++) {
+		text_put_bytes(out, &lines[at], 1);
+		if (lines[at] == '\n')
+			text_put(out, "  ");
+	}
+}
+
+// Puts a plan's report. The manifest goes in as the text that it is: read again it would need memory that jansson (2.14) takes for granted.
+static void put_job(struct text *out, const struct build *build, const struct job *job, bool written)
+{
+	static const char end[] = "\n}\n";
+	json_t *document = job_json(build, job, written);
+	char *head = json_text(document);
+	if (head != NULL) {
+		text_put_bytes(out, head, strlen(head) - strlen(end));
+		text_put(out, ",\n  \"manifest\": ");
+		put_deeper(out, job->manifest, strlen(job->manifest) - strlen("\n"));
+		text_put(out, end);
+	}
+	out->failed = out->failed || head == NULL;
+	free(head);
+	json_decref(document);
 }
 
 static int print_json(const struct build *build, bool written)
 {
-	json_t *document = build->job_count > 1 ? json_array() : job_json(build, &build->jobs[0], written);
-	for (size_t index = 0; build->job_count > 1 && index < build->job_count; index++)
-		json_append(&document, job_json(build, &build->jobs[index], written));
-	char *string = json_text(document);
-	json_decref(document);
-	return print_string(string);
+	const bool list = build->job_count > 1;
+	struct text text = {0};
+	text_put(&text, list ? "[\n" : "");
+	for (size_t index = 0; index < build->job_count; index++) {
+		text_put(&text, index > 0 ? ",\n" : "");
+		put_job(&text, build, &build->jobs[index], written);
+	}
+	text_put(&text, list ? "]\n" : "");
+	const int code = text.failed ? memory_error() : EXIT_GOOD;
+	if (code == EXIT_GOOD)
+		fputs(text_string(&text), stdout);
+	text_release(&text);
+	return code;
 }
 
 // Writes all files. A signal that would end the program waits until the temporaries are gone. False with *failure filled.

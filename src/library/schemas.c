@@ -1,4 +1,5 @@
 #include "base/arena.h"
+#include "base/text.h"
 #include "catalogue/catalogue.h"
 #include "library/library.h"
 #include "view/reports.h"
@@ -22,7 +23,7 @@ size_t scanlatch_schema_count(void)
 
 const char *scanlatch_schema_name(size_t schema)
 {
-	return schema < COUNT_OF(languages) ? languages[schema].name : report_name(schema - COUNT_OF(languages));
+	return schema < COUNT_OF(languages) ? languages[schema].name : report_schemas[schema - COUNT_OF(languages)].name;
 }
 
 // The schema of a language, with the names that the catalogues have. NULL when memory is out.
@@ -45,5 +46,7 @@ char *scanlatch_schema_json(size_t schema)
 {
 	if (schema < COUNT_OF(languages))
 		return take_json(language_schema(schema));
-	return take_json(view_report_schema(schema - COUNT_OF(languages)));
+	struct text text = {0};
+	view_report_schema(&text, schema - COUNT_OF(languages));
+	return take_string(&text);
 }

@@ -1,28 +1,27 @@
 // JSON Schema (draft 2020-12) of the reports that commands print with --json, and of the manifest. Data: src/view/reports/NAME.json, one
-// for each report, and in src/view/reports/shared/ the definitions that reports share; all built in.
+// for each report, and in src/view/reports/shared/ the definitions that reports share. They are put together when the program is built
+// (tools/report-schema.awk): nothing is parsed here, which jansson (2.14) does badly where memory is out.
 #ifndef SCANLATCH_VIEW_REPORTS_H
 #define SCANLATCH_VIEW_REPORTS_H
 
-#include <jansson.h>
-#include <stdbool.h>
 #include <stddef.h>
 
-// A file that is built in.
-struct report_file {
-	const char *name; // without its ending
-	bool shared;      // definitions, and no report
+struct text;
+
+// A schema that is built in, with the definitions that it uses.
+struct report_schema {
+	const char *name; // of the report: the file's, without its ending
 	const unsigned char *bytes;
 	size_t length;
 };
 
-// Reports by name; the last file has no name.
-extern const struct report_file report_files[];
+// By name; the last one has none.
+extern const struct report_schema report_schemas[];
 
-// How many reports there are, and the name of one (an index below that). Cannot fail.
+// How many reports there are. Cannot fail.
 size_t report_count(void);
-const char *report_name(size_t report);
 
-// The schema of a report, with the definitions that it uses. A new reference, owned by the caller; NULL when memory is out.
-json_t *view_report_schema(size_t report);
+// Puts the schema of a report, an index below that. Failure is text's.
+void view_report_schema(struct text *out, size_t report);
 
 #endif

@@ -76,26 +76,49 @@ for ((number = total - 450; number <= total; number++)); do
 	esac
 done
 holds "limits: $refusals of 450 allocations refused" test "$refusals" -gt 300
-# The same of diff, which writes nothing: its whole result, or 3 and nothing. Every ninth allocation, another ninth for each form.
-first=0
-sed 's/col }/col + 0, page2: 0 }/; s/page: 1..0/page: 1..0, page2: 2/; s/cells: 2/cells: 3/; s/name: jetty/name: pier/' plan.yaml >later.yaml
-for form in --color=never --markdown --json --svg; do
-	"$program" diff "$form" plan.yaml later.yaml >diff.stdout
-	same "diff $form: status" 1 $?
-	LD_PRELOAD=./faults.so FAULTS_COUNT=count "$program" diff "$form" plan.yaml later.yaml >stdout
+
+# whole_or_none NAME STATUS FIRST STEP LEAST ARGUMENT …: what the program prints is whole and its exit status STATUS, or it is 3 and nothing is
+# printed, and that LEAST times; for each STEP-th allocation from FIRST on, which counts from the end if it is below zero.
+whole_or_none() {
+	local name=$1 wanted=$2 first=$3 step=$4 least=$5 number total status refusals=0
+	shift 5
+	"$program" "$@" >whole.printed
+	same "$name: status" "$wanted" $?
+	LD_PRELOAD=./faults.so FAULTS_COUNT=count "$program" "$@" >stdout
 	total=$(cat count)
-	refusals=0
-	first=$((first + 1))
-	for ((number = first; number <= total; number += 9)); do
-		LD_PRELOAD=./faults.so FAULTS_ALLOCATION=$number "$program" diff "$form" plan.yaml later.yaml >stdout 2>stderr
-		case $? in
-		1) cmp -s diff.stdout stdout || fail "diff $form, allocation $number: status 1, but another result" ;;
-		3) [ ! -s stdout ] && [ -s stderr ] && refusals=$((refusals + 1)) || fail "diff $form, allocation $number: status 3, but a result or no word" ;;
-		*) fail "diff $form, allocation $number: status $?" "$(head -n 3 stderr)" ;;
-		esac
+	[ "$first" -ge 0 ] || first=$((total + first))
+	for ((number = first; number <= total; number += step)); do
+		LD_PRELOAD=./faults.so FAULTS_ALLOCATION=$number "$program" "$@" >stdout 2>stderr
+		status=$?
+		if [ $status -eq "$wanted" ]; then
+			cmp -s whole.printed stdout || fail "$name, allocation $number: status $status, but another result"
+		elif [ $status -eq 3 ]; then
+			refusals=$((refusals + 1))
+			{ [ ! -s stdout ] && [ -s stderr ]; } || fail "$name, allocation $number: status 3, but a result or no word"
+		else
+			fail "$name, allocation $number: status $status" "$(head -n 3 stderr)"
+		fi
 	done
-	holds "diff $form: $refusals of $total allocations refused" test "$refusals" -gt 500 -a "$cases_failed" -eq 0
+	holds "$name: $refusals of $total allocations refused" test "$refusals" -gt "$least" -a "$cases_failed" -eq 0
+}
+
+# Of diff every ninth allocation, another ninth for each form.
+sed 's/col }/col + 0, page2: 0 }/; s/page: 1..0/page: 1..0, page2: 2/; s/cells: 2/cells: 3/; s/name: jetty/name: pier/' plan.yaml >later.yaml
+first=0
+for form in --color=never --markdown --json --svg; do
+	first=$((first + 1))
+	whole_or_none "diff $form" 1 $first 9 500 diff "$form" plan.yaml later.yaml
 done
+
+# Of build --json those of its report, which is made after the files are written.
+"$program" build plan.yaml -o reported >stdout
+whole_or_none 'build --json' 0 -600 1 100 build plan.yaml --json -o reported
+# Of lift those of the plan that is read again, too.
+sed 's/codes: auto/codes: [1]/' plan.yaml >listed.yaml
+"$program" build listed.yaml -o listed >stdout
+whole_or_none 'lift --json' 0 1 13 300 lift --json listed.yaml listed
+whole_or_none 'lift --near' 0 2 13 300 lift --near listed.yaml listed
+whole_or_none 'schema of a report' 0 1 1 0 schema check
 
 # The same of build --near: every eleventh allocation.
 mkdir images

@@ -8,10 +8,16 @@ import jsonschema
 PROGRAM = os.environ["SCANLATCH"]
 
 
+def single_keys(pairs):
+    """An object, each of whose keys stands once."""
+    assert len({key for key, _ in pairs}) == len(pairs), f"a key stands twice: {[key for key, _ in pairs]}"
+    return dict(pairs)
+
+
 def schema(name):
     """The schema of a language or report, itself valid by the meta-schema."""
     text = subprocess.run([PROGRAM, "schema", name], check=True, stdout=subprocess.PIPE).stdout
-    document = json.loads(text)
+    document = json.loads(text, object_pairs_hook=single_keys)
     jsonschema.Draft202012Validator.check_schema(document)
     return document
 
