@@ -6,6 +6,7 @@
 #include <signal.h>
 #include <stdbool.h>
 #include <stddef.h>
+#include <stdio.h>
 
 #include "scanlatch/scanlatch.h"
 
@@ -75,6 +76,11 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 
 // Prints the version to standard output. Returns EXIT_GOOD.
 int print_version(void);
+
+// Prints a line that names what is not ours, such as paths: what could command a terminal, newlines too, is printed as '?'. Nothing if
+// memory is out.
+__attribute__((format(printf, 2, 3)))
+void print_line(FILE *out, const char *format, ...);
 
 // "scanlatch COMMAND: …" and where to find help, on standard error. Returns EXIT_BAD.
 __attribute__((format(printf, 2, 3)))

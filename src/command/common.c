@@ -5,6 +5,8 @@
 #include <string.h>
 #include <unistd.h>
 
+#include "base/excerpt.h"
+#include "base/text.h"
 #include "command/command.h"
 
 static bool take_colour(struct common_options *options, const char *value, const char *command)
@@ -57,14 +59,35 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 	return PARSED;
 }
 
-int usage_error(const char *command, const char *format, ...)
+static void put_line(FILE *out, const char *before, const char *format, va_list arguments)
+{
+	struct text line = {0}, printable = {0};
+	text_put(&line, before);
+	text_vprintf(&line, format, arguments);
+	excerpt_put_printable(text_string(&line), line.length, &printable);
+	if (!line.failed && !printable.failed)
+		fprintf(out, "%s\n", text_string(&printable));
+	text_release(&line);
+	text_release(&printable);
+}
+
+void print_line(FILE *out, const char *format, ...)
 {
 	va_list arguments;
-	fprintf(stderr, "scanlatch %s: ", command);
 	va_start(arguments, format);
-	vfprintf(stderr, format, arguments);
+	put_line(out, "", format, arguments);
 	va_end(arguments);
-	fprintf(stderr, "\nscanlatch: try \"scanlatch %s --help\"\n", command);
+}
+
+int usage_error(const char *command, const char *format, ...)
+{
+	char before[32];
+	va_list arguments;
+	snprintf(before, sizeof before, "scanlatch %s: ", command);
+	va_start(arguments, format);
+	put_line(stderr, before, format, arguments);
+	va_end(arguments);
+	print_line(stderr, "scanlatch: try \"scanlatch %s --help\"", command);
 	return EXIT_BAD;
 }
 

@@ -3,7 +3,7 @@
 #include <stdlib.h>
 #include <string.h>
 
-#include "command/command.h"
+#include "command/diff.h"
 
 static const char help[] =
 	"Usage: scanlatch diff [options] OLD NEW\n"
@@ -36,13 +36,6 @@ static const struct option long_options[] = {
 	{"markdown", no_argument, NULL, OPTION_MARKDOWN},
 	{"svg", no_argument, NULL, OPTION_SVG},
 	{NULL, 0, NULL, 0},
-};
-
-struct diff_options {
-	struct common_options common;
-	bool git;
-	bool markdown;
-	bool svg;
 };
 
 static bool take(void *options, int option, const char *value)
@@ -121,9 +114,8 @@ static int compare(const char *const names[2], const struct side *sides, const s
 	return code;
 }
 
-// Reads both sides and compares them. `names` are what reports call the two, `sources` what messages do.
-static int diff(const char *const paths[2], const char *const names[2], const char *const sources[2], const struct diff_options *options,
-                scanlatch_messages *messages)
+int diff_files(const char *const paths[2], const char *const names[2], const char *const sources[2], const struct diff_options *options,
+               scanlatch_messages *messages)
 {
 	struct side sides[2] = {{NULL, NULL, NULL}, {NULL, NULL, NULL}};
 	struct progress progress = PROGRESS_NONE;
@@ -146,54 +138,6 @@ static int diff(const char *const paths[2], const char *const names[2], const ch
 	return code;
 }
 
-// What git calls with: PATH OLD HEX MODE NEW HEX MODE, and of a renamed file the new path and how alike the two are.
-enum { GIT_PATH, GIT_OLD, GIT_OLD_HEX, GIT_OLD_MODE, GIT_NEW, GIT_NEW_HEX, GIT_NEW_MODE, GIT_COUNT, GIT_RENAMED = 9 };
-
-static void print_git_heading(char **arguments, const char *name)
-{
-	const bool moded = strcmp(arguments[GIT_OLD_MODE], ".") != 0 && strcmp(arguments[GIT_NEW_MODE], ".") != 0;
-	printf("scanlatch diff %s", arguments[GIT_PATH]);
-	if (strcmp(name, arguments[GIT_PATH]) != 0)
-		printf(" to %s", name);
-	if (moded && strcmp(arguments[GIT_OLD_MODE], arguments[GIT_NEW_MODE]) != 0)
-		printf(", mode %s, was %s", arguments[GIT_NEW_MODE], arguments[GIT_OLD_MODE]);
-	puts("");
-	fflush(stdout); // messages follow on standard error
-}
-
-static int diff_git_pair(char **arguments, const char *name, const struct diff_options *options, scanlatch_messages *messages)
-{
-	const char *const paths[2] = {arguments[GIT_OLD], arguments[GIT_NEW]}, *const names[2] = {arguments[GIT_PATH], name};
-	char *old_source = malloc(strlen(arguments[GIT_PATH]) + sizeof " (old)");
-	if (old_source == NULL)
-		return memory_error();
-	strcat(strcpy(old_source, arguments[GIT_PATH]), " (old)");
-	const char *const sources[2] = {old_source, name};
-	const int code = diff(paths, names, sources, options, messages);
-	free(old_source);
-	if (code == EXIT_BAD)
-		puts("not compared, the messages say why; \"git diff --no-ext-diff\" shows the text");
-	return code == EXIT_SYSTEM ? EXIT_SYSTEM : EXIT_GOOD;
-}
-
-// git takes an exit code other than 0 for a failure.
-static int diff_git(char **arguments, int count, const struct diff_options *options, scanlatch_messages *messages)
-{
-	if (count == 1) {
-		printf("scanlatch diff %s\nnot merged yet\n", arguments[GIT_PATH]);
-		return EXIT_GOOD;
-	}
-	if (count != GIT_COUNT && count != GIT_RENAMED)
-		return usage_error("diff", "--git: wanted the seven arguments of git's external diff, found %d", count);
-	const char *name = count == GIT_RENAMED ? arguments[GIT_COUNT] : arguments[GIT_PATH];
-	const bool added = strcmp(arguments[GIT_OLD], "/dev/null") == 0, removed = strcmp(arguments[GIT_NEW], "/dev/null") == 0;
-	print_git_heading(arguments, name);
-	if (!added && !removed)
-		return diff_git_pair(arguments, name, options, messages);
-	puts(added ? "the file is new" : "the file is gone");
-	return EXIT_GOOD;
-}
-
 static const char *label_of(const char *path)
 {
 	return strcmp(path, "-") == 0 ? "standard input" : path;
@@ -208,7 +152,7 @@ static int diff_two(char **arguments, int count, const struct diff_options *opti
 		return usage_error("diff", "wanted at least one plan or set, found two folders");
 	if (strcmp(paths[0], "-") == 0 && strcmp(paths[1], "-") == 0)
 		return usage_error("diff", "only one of OLD and NEW can be standard input");
-	return diff(paths, labels, labels, options, messages);
+	return diff_files(paths, labels, labels, options, messages);
 }
 
 int command_diff(int argument_count, char **arguments)
