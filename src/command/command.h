@@ -97,11 +97,14 @@ int print_string(char *string);
 // Lets the signals that would end the program wait, so that no temporary file is left; *before is what to restore.
 void hold_ending_signals(sigset_t *before);
 
-// Writes a file, whole or not at all; *kept says that it held these bytes already and was left alone. A device or pipe is written into, not
-// replaced. False after saying on standard error what was refused.
+// Writes a file, whole or not at all, and makes the folders that it lacks; *kept says that it held these bytes already and was left alone. A device or
+// pipe is written into, not replaced. False after saying on standard error what was refused.
 bool write_output(const char *path, const char *bytes, size_t length, bool *kept);
 
-// The same for a result, says so on standard output, and of a refusal why. Returns EXIT_GOOD or EXIT_SYSTEM.
+// Says on standard output that a file was written, or kept.
+void print_written(const char *path, size_t length, bool kept);
+
+// The same as write_output for a result, says so on standard output, and of a refusal why. Returns EXIT_GOOD or EXIT_SYSTEM.
 int write_result(const char *path, const char *result);
 
 // "scanlatch: memory is out" on standard error. Returns EXIT_SYSTEM.

@@ -1,7 +1,10 @@
+#define _XOPEN_SOURCE 700 // realpath
+
 #include <getopt.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
+#include <sys/stat.h>
 
 #include "command/diff.h"
 
@@ -138,21 +141,64 @@ int diff_files(const char *const paths[2], const char *const names[2], const cha
 	return code;
 }
 
+// The name of a folder that is given as a way to it, "." or one that ends in "..", or NULL; to be freed.
+static char *resolve_folder(const char *path)
+{
+	size_t end = strlen(path);
+	while (end > 1 && path[end - 1] == '/')
+		end--;
+	const bool dots = end > 0 && path[end - 1] == '.' && (end == 1 || path[end - 2] == '/' || path[end - 2] == '.');
+	return dots && is_folder(path) ? realpath(path, NULL) : NULL;
+}
+
 static const char *label_of(const char *path)
 {
-	return strcmp(path, "-") == 0 ? "standard input" : path;
+	return strcmp(path, "-") == 0 ? "standard input" : path[0] == '\0' ? "\"\"" : path;
+}
+
+// True if a file's first bytes are no text, or a record of Intel HEX: then it is likely an image, which is no plan.
+static bool is_like_image(const char *path)
+{
+	struct stat status;
+	char bytes[4096];
+	FILE *file = stat(path, &status) == 0 && S_ISREG(status.st_mode) ? fopen(path, "rb") : NULL;
+	if (file == NULL)
+		return false;
+	const size_t count = fread(bytes, 1, sizeof bytes - 1, file);
+	fclose(file);
+	bytes[count] = '\0';
+	for (size_t index = 0; index < count; index++) {
+		const unsigned char byte = (unsigned char)bytes[index];
+		if ((byte < ' ' && strchr("\t\n\r", byte) == NULL) || byte == 0 || byte > 0xF7) // never in UTF-8
+			return true;
+	}
+	return bytes[0] == ':' && strspn(bytes + 1, "0123456789ABCDEFabcdef") >= 10;
+}
+
+static int diff_labelled(char **arguments, const char *const labels[2], const struct diff_options *options, scanlatch_messages *messages)
+{
+	const char *const paths[2] = {arguments[0], arguments[1]};
+	const int code = diff_files(paths, labels, labels, options, messages);
+	for (int side = 0; code == EXIT_BAD && side < 2; side++)
+		if (is_like_image(paths[side]))
+			print_line(stderr, "scanlatch diff: \"%s\" looks like an image: images are given as the folder that has one for each chip", paths[side]);
+	return code;
 }
 
 static int diff_two(char **arguments, int count, const struct diff_options *options, scanlatch_messages *messages)
 {
 	if (count != 2)
 		return usage_error("diff", "wanted OLD and NEW, found %d argument%s", count, count == 1 ? "" : "s");
-	const char *const paths[2] = {arguments[0], arguments[1]}, *const labels[2] = {label_of(arguments[0]), label_of(arguments[1])};
-	if (is_folder(paths[0]) && is_folder(paths[1]))
+	if (is_folder(arguments[0]) && is_folder(arguments[1]))
 		return usage_error("diff", "wanted at least one plan or set, found two folders");
-	if (strcmp(paths[0], "-") == 0 && strcmp(paths[1], "-") == 0)
+	if (strcmp(arguments[0], "-") == 0 && strcmp(arguments[1], "-") == 0)
 		return usage_error("diff", "only one of OLD and NEW can be standard input");
-	return diff_files(paths, labels, labels, options, messages);
+	char *const folders[2] = {resolve_folder(arguments[0]), resolve_folder(arguments[1])};
+	const char *const labels[2] = {folders[0] != NULL ? folders[0] : label_of(arguments[0]), folders[1] != NULL ? folders[1] : label_of(arguments[1])};
+	const int code = diff_labelled(arguments, labels, options, messages);
+	free(folders[0]);
+	free(folders[1]);
+	return code;
 }
 
 int command_diff(int argument_count, char **arguments)

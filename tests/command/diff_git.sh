@@ -111,6 +111,8 @@ sed -i 's/^note: .*/note: last of all/' tide-board-60.yaml
 run 0 git diff
 holds 'a bad plan: where' grep -q '^pier-clock.yaml:[0-9]*:1: error: .*\[unknown-key\]$' "$work/stderr"
 same 'bad plans: words' 2 "$(grep -c '^not compared, the messages say why; "git diff --no-ext-diff" shows the text$' "$work/stdout")"
+same 'what is no plan: one error of each revision' 2 "$(grep -c '^pipeline.yaml.*: error: a plan needs the key "scanlatch" \[missing-key\]$' "$work/stderr")"
+same 'what is no plan: no others' 2 "$(grep -c '^pipeline.yaml' "$work/stderr")"
 holds 'the old one of two bad files is called so' grep -q '^pipeline.yaml (old):' "$work/stderr"
 holds 'after them, the next' grep -q "the plan's note: last of all" "$work/stdout"
 quiet git checkout -q .
