@@ -227,7 +227,7 @@ static bool any_failed(const struct build *build)
 static void report_write_failure(const struct write_failure *failure)
 {
 	fflush(stdout);
-	fprintf(stderr, "scanlatch: cannot %s %s: %s; %s\n", failure->step, failure->path, strerror(failure->error),
+	print_line(stderr, "scanlatch: cannot %s %s: %s; %s", failure->step, failure->path, strerror(failure->error),
 	        failure->begun ? "files before it may be new already" : "nothing was written");
 }
 
@@ -249,7 +249,7 @@ static void print_near(const struct build *build, const struct job *job)
 {
 	if (job->old == NULL)
 		return;
-	printf("near %s\n", build->options->near);
+	print_line(stdout, "near %s", build->options->near);
 	for (size_t chip = 0; chip < scanlatch_plan_chips(job->plan); chip++) {
 		const size_t changed = scanlatch_images_differing(job->old, job->made, chip), plain = scanlatch_images_differing(job->old, job->plain, chip);
 		printf("  %s: ", scanlatch_plan_chip_label(job->plan, chip));
@@ -268,7 +268,7 @@ static void print_text(const struct build *build, bool written, bool refused)
 		printf("%s%s\n%s", index == 0 ? "" : "\n", scanlatch_plan_name(job->plan), job->report);
 		print_near(build, job);
 		for (size_t file = job->first_file; written && file < job->first_file + job->file_count; file++)
-			printf("%-5s %s/%s (%zu bytes)\n", build->files[file].kept ? "kept" : "wrote", build->options->directory,
+			print_line(stdout, "%-5s %s/%s (%zu bytes)", build->files[file].kept ? "kept" : "wrote", build->options->directory,
 			       build->files[file].name, build->files[file].length);
 		print_outcome(job, written, refused);
 	}

@@ -6,6 +6,7 @@
 #include <signal.h>
 #include <stdbool.h>
 #include <stddef.h>
+#include <stdio.h>
 
 #include "scanlatch/scanlatch.h"
 
@@ -76,6 +77,11 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 // Prints the version to standard output. Returns EXIT_GOOD.
 int print_version(void);
 
+// Prints a line that names what is not ours, such as paths: what could command a terminal, newlines too, is printed as '?'. Nothing if
+// memory is out.
+__attribute__((format(printf, 2, 3)))
+void print_line(FILE *out, const char *format, ...);
+
 // "scanlatch COMMAND: …" and where to find help, on standard error. Returns EXIT_BAD.
 __attribute__((format(printf, 2, 3)))
 int usage_error(const char *command, const char *format, ...);
@@ -91,11 +97,14 @@ int print_string(char *string);
 // Lets the signals that would end the program wait, so that no temporary file is left; *before is what to restore.
 void hold_ending_signals(sigset_t *before);
 
-// Writes a file, whole or not at all; *kept says that it held these bytes already and was left alone. A device or pipe is written into, not
-// replaced. False after saying on standard error what was refused.
+// Writes a file, whole or not at all, and makes the folders that it lacks; *kept says that it held these bytes already and was left alone. A device or
+// pipe is written into, not replaced. False after saying on standard error what was refused.
 bool write_output(const char *path, const char *bytes, size_t length, bool *kept);
 
-// The same for a result, says so on standard output, and of a refusal why. Returns EXIT_GOOD or EXIT_SYSTEM.
+// Says on standard output that a file was written, or kept.
+void print_written(const char *path, size_t length, bool kept);
+
+// The same as write_output for a result, says so on standard output, and of a refusal why. Returns EXIT_GOOD or EXIT_SYSTEM.
 int write_result(const char *path, const char *result);
 
 // "scanlatch: memory is out" on standard error. Returns EXIT_SYSTEM.

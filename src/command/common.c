@@ -5,6 +5,8 @@
 #include <string.h>
 #include <unistd.h>
 
+#include "base/excerpt.h"
+#include "base/text.h"
 #include "command/command.h"
 
 static bool take_colour(struct common_options *options, const char *value, const char *command)
@@ -25,6 +27,31 @@ int print_version(void)
 	return EXIT_GOOD;
 }
 
+static bool is_printable(const char *words)
+{
+	struct text printable = {0};
+	excerpt_put_printable(words, strlen(words), &printable);
+	const bool same = !printable.failed && strcmp(text_string(&printable), words) == 0;
+	text_release(&printable);
+	return same;
+}
+
+// getopt_long prints options as they are: of those that could command a terminal it is not to speak.
+static bool are_printable(char *const *arguments)
+{
+	while (*arguments != NULL && is_printable(*arguments))
+		arguments++;
+	return *arguments == NULL;
+}
+
+static int option_error(const char *command, const char *argument)
+{
+	if (opterr == 0)
+		return usage_error(command, "wanted an option as the help has them, found '%s'", argument);
+	print_line(stderr, "scanlatch: try \"scanlatch %s --help\"", command);
+	return EXIT_BAD;
+}
+
 int parse_options(const struct option_table *table, int argument_count, char **arguments, void *options)
 {
 	struct common_options *common = options;
@@ -32,6 +59,7 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 	int option;
 	snprintf(name, sizeof name, "scanlatch %s", table->command);
 	arguments[0] = name;
+	opterr = are_printable(arguments);
 	while ((option = getopt_long(argument_count, arguments, table->short_options, table->long_options, NULL)) != -1) {
 		bool good = true;
 		if (option == 'h') {
@@ -39,9 +67,8 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 			return EXIT_GOOD;
 		} else if (option == 'V') {
 			return print_version();
-		} else if (option == '?') { // getopt_long has said what is wrong
-			fprintf(stderr, "scanlatch: try \"scanlatch %s --help\"\n", table->command);
-			return EXIT_BAD;
+		} else if (option == '?') {
+			return option_error(table->command, arguments[optind - 1]);
 		} else if (option == OPTION_COLOUR) {
 			good = take_colour(common, optarg, table->command);
 		} else if (option == OPTION_JSON) {
@@ -57,14 +84,35 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 	return PARSED;
 }
 
-int usage_error(const char *command, const char *format, ...)
+static void put_line(FILE *out, const char *before, const char *format, va_list arguments)
+{
+	struct text line = {0}, printable = {0};
+	text_put(&line, before);
+	text_vprintf(&line, format, arguments);
+	excerpt_put_printable(text_string(&line), line.length, &printable);
+	if (!line.failed && !printable.failed)
+		fprintf(out, "%s\n", text_string(&printable));
+	text_release(&line);
+	text_release(&printable);
+}
+
+void print_line(FILE *out, const char *format, ...)
 {
 	va_list arguments;
-	fprintf(stderr, "scanlatch %s: ", command);
 	va_start(arguments, format);
-	vfprintf(stderr, format, arguments);
+	put_line(out, "", format, arguments);
 	va_end(arguments);
-	fprintf(stderr, "\nscanlatch: try \"scanlatch %s --help\"\n", command);
+}
+
+int usage_error(const char *command, const char *format, ...)
+{
+	char before[32];
+	va_list arguments;
+	snprintf(before, sizeof before, "scanlatch %s: ", command);
+	va_start(arguments, format);
+	put_line(stderr, before, format, arguments);
+	va_end(arguments);
+	print_line(stderr, "scanlatch: try \"scanlatch %s --help\"", command);
 	return EXIT_BAD;
 }
 

@@ -1,9 +1,12 @@
+#define _XOPEN_SOURCE 700 // realpath
+
 #include <getopt.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
+#include <sys/stat.h>
 
-#include "command/command.h"
+#include "command/diff.h"
 
 static const char help[] =
 	"Usage: scanlatch diff [options] OLD NEW\n"
@@ -36,13 +39,6 @@ static const struct option long_options[] = {
 	{"markdown", no_argument, NULL, OPTION_MARKDOWN},
 	{"svg", no_argument, NULL, OPTION_SVG},
 	{NULL, 0, NULL, 0},
-};
-
-struct diff_options {
-	struct common_options common;
-	bool git;
-	bool markdown;
-	bool svg;
 };
 
 static bool take(void *options, int option, const char *value)
@@ -121,9 +117,8 @@ static int compare(const char *const names[2], const struct side *sides, const s
 	return code;
 }
 
-// Reads both sides and compares them. `names` are what reports call the two, `sources` what messages do.
-static int diff(const char *const paths[2], const char *const names[2], const char *const sources[2], const struct diff_options *options,
-                scanlatch_messages *messages)
+int diff_files(const char *const paths[2], const char *const names[2], const char *const sources[2], const struct diff_options *options,
+               scanlatch_messages *messages)
 {
 	struct side sides[2] = {{NULL, NULL, NULL}, {NULL, NULL, NULL}};
 	struct progress progress = PROGRESS_NONE;
@@ -146,69 +141,64 @@ static int diff(const char *const paths[2], const char *const names[2], const ch
 	return code;
 }
 
-// What git calls with: PATH OLD HEX MODE NEW HEX MODE, and of a renamed file the new path and how alike the two are.
-enum { GIT_PATH, GIT_OLD, GIT_OLD_HEX, GIT_OLD_MODE, GIT_NEW, GIT_NEW_HEX, GIT_NEW_MODE, GIT_COUNT, GIT_RENAMED = 9 };
-
-static void print_git_heading(char **arguments, const char *name)
+// The name of a folder that is given as a way to it, "." or one that ends in "..", or NULL; to be freed.
+static char *resolve_folder(const char *path)
 {
-	const bool moded = strcmp(arguments[GIT_OLD_MODE], ".") != 0 && strcmp(arguments[GIT_NEW_MODE], ".") != 0;
-	printf("scanlatch diff %s", arguments[GIT_PATH]);
-	if (strcmp(name, arguments[GIT_PATH]) != 0)
-		printf(" to %s", name);
-	if (moded && strcmp(arguments[GIT_OLD_MODE], arguments[GIT_NEW_MODE]) != 0)
-		printf(", mode %s, was %s", arguments[GIT_NEW_MODE], arguments[GIT_OLD_MODE]);
-	puts("");
-	fflush(stdout); // messages follow on standard error
-}
-
-static int diff_git_pair(char **arguments, const char *name, const struct diff_options *options, scanlatch_messages *messages)
-{
-	const char *const paths[2] = {arguments[GIT_OLD], arguments[GIT_NEW]}, *const names[2] = {arguments[GIT_PATH], name};
-	char *old_source = malloc(strlen(arguments[GIT_PATH]) + sizeof " (old)");
-	if (old_source == NULL)
-		return memory_error();
-	strcat(strcpy(old_source, arguments[GIT_PATH]), " (old)");
-	const char *const sources[2] = {old_source, name};
-	const int code = diff(paths, names, sources, options, messages);
-	free(old_source);
-	if (code == EXIT_BAD)
-		puts("not compared, the messages say why; \"git diff --no-ext-diff\" shows the text");
-	return code == EXIT_SYSTEM ? EXIT_SYSTEM : EXIT_GOOD;
-}
-
-// git takes an exit code other than 0 for a failure.
-static int diff_git(char **arguments, int count, const struct diff_options *options, scanlatch_messages *messages)
-{
-	if (count == 1) {
-		printf("scanlatch diff %s\nnot merged yet\n", arguments[GIT_PATH]);
-		return EXIT_GOOD;
-	}
-	if (count != GIT_COUNT && count != GIT_RENAMED)
-		return usage_error("diff", "--git: wanted the seven arguments of git's external diff, found %d", count);
-	const char *name = count == GIT_RENAMED ? arguments[GIT_COUNT] : arguments[GIT_PATH];
-	const bool added = strcmp(arguments[GIT_OLD], "/dev/null") == 0, removed = strcmp(arguments[GIT_NEW], "/dev/null") == 0;
-	print_git_heading(arguments, name);
-	if (!added && !removed)
-		return diff_git_pair(arguments, name, options, messages);
-	puts(added ? "the file is new" : "the file is gone");
-	return EXIT_GOOD;
+	size_t end = strlen(path);
+	while (end > 1 && path[end - 1] == '/')
+		end--;
+	const bool dots = end > 0 && path[end - 1] == '.' && (end == 1 || path[end - 2] == '/' || path[end - 2] == '.');
+	return dots && is_folder(path) ? realpath(path, NULL) : NULL;
 }
 
 static const char *label_of(const char *path)
 {
-	return strcmp(path, "-") == 0 ? "standard input" : path;
+	return strcmp(path, "-") == 0 ? "standard input" : path[0] == '\0' ? "\"\"" : path;
+}
+
+// True if a file's first bytes are no text, or a record of Intel HEX: then it is likely an image, which is no plan.
+static bool is_like_image(const char *path)
+{
+	struct stat status;
+	char bytes[4096];
+	FILE *file = stat(path, &status) == 0 && S_ISREG(status.st_mode) ? fopen(path, "rb") : NULL;
+	if (file == NULL)
+		return false;
+	const size_t count = fread(bytes, 1, sizeof bytes - 1, file);
+	fclose(file);
+	bytes[count] = '\0';
+	for (size_t index = 0; index < count; index++) {
+		const unsigned char byte = (unsigned char)bytes[index];
+		if ((byte < ' ' && strchr("\t\n\r", byte) == NULL) || byte == 0 || byte > 0xF7) // never in UTF-8
+			return true;
+	}
+	return bytes[0] == ':' && strspn(bytes + 1, "0123456789ABCDEFabcdef") >= 10;
+}
+
+static int diff_labelled(char **arguments, const char *const labels[2], const struct diff_options *options, scanlatch_messages *messages)
+{
+	const char *const paths[2] = {arguments[0], arguments[1]};
+	const int code = diff_files(paths, labels, labels, options, messages);
+	for (int side = 0; code == EXIT_BAD && side < 2; side++)
+		if (is_like_image(paths[side]))
+			print_line(stderr, "scanlatch diff: \"%s\" looks like an image: images are given as the folder that has one for each chip", paths[side]);
+	return code;
 }
 
 static int diff_two(char **arguments, int count, const struct diff_options *options, scanlatch_messages *messages)
 {
 	if (count != 2)
 		return usage_error("diff", "wanted OLD and NEW, found %d argument%s", count, count == 1 ? "" : "s");
-	const char *const paths[2] = {arguments[0], arguments[1]}, *const labels[2] = {label_of(arguments[0]), label_of(arguments[1])};
-	if (is_folder(paths[0]) && is_folder(paths[1]))
+	if (is_folder(arguments[0]) && is_folder(arguments[1]))
 		return usage_error("diff", "wanted at least one plan or set, found two folders");
-	if (strcmp(paths[0], "-") == 0 && strcmp(paths[1], "-") == 0)
+	if (strcmp(arguments[0], "-") == 0 && strcmp(arguments[1], "-") == 0)
 		return usage_error("diff", "only one of OLD and NEW can be standard input");
-	return diff(paths, labels, labels, options, messages);
+	char *const folders[2] = {resolve_folder(arguments[0]), resolve_folder(arguments[1])};
+	const char *const labels[2] = {folders[0] != NULL ? folders[0] : label_of(arguments[0]), folders[1] != NULL ? folders[1] : label_of(arguments[1])};
+	const int code = diff_labelled(arguments, labels, options, messages);
+	free(folders[0]);
+	free(folders[1]);
+	return code;
 }
 
 int command_diff(int argument_count, char **arguments)

@@ -4,8 +4,6 @@
 #include <stdlib.h>
 #include <string.h>
 
-#include "base/arena.h"
-#include "base/file.h"
 #include "command/command.h"
 
 static const char help[] =
@@ -36,8 +34,8 @@ static const char help[] =
 	"What is done with it:\n"
 	"      --top N               layouts to keep, 1 to 1000 (default: 10)\n"
 	"      --write K FILE        write the K-th as a plan to FILE, in place of the report; - is standard\n"
-	"                            output\n"
-	"      --json                one JSON document instead of text\n"
+	"                            output. Folders that are missing are made\n"
+	"      --json                one JSON document instead of text, also with --write\n"
 	"      --color WHEN          auto, always or never\n"
 	"  -h, --help                print this help\n"
 	"  -V, --version             print the version\n";
@@ -115,50 +113,33 @@ static bool take_option(void *context, int option, const char *value)
 
 static const struct option_table table = {"fit", help, "hV", long_options, take_option};
 
-// Writes bytes to a path, whole or not at all, as one file of its folder. Returns an exit code.
-static int write_file(struct arena *arena, const char *path, const char *bytes, size_t length)
-{
-	const char *slash = strrchr(path, '/');
-	const char *folder = slash == NULL ? "." : slash == path ? "/" : arena_copy(arena, path, (size_t)(slash - path));
-	struct output_file file = {.name = slash == NULL ? path : slash + 1, .bytes = bytes, .length = length};
-	struct write_failure failure;
-	if (folder == NULL)
-		return memory_error();
-	if (file_write_all(arena, folder, &file, 1, &failure)) {
-		printf("%s %s (%zu bytes)\n", file.kept ? "kept" : "wrote", path, length);
-		return EXIT_GOOD;
-	}
-	fprintf(stderr, "scanlatch: cannot %s %s: %s; nothing was written\n", failure.step, failure.path, strerror(failure.error));
-	return EXIT_SYSTEM;
-}
-
 static int write_plan(const struct fit_options *options, const scanlatch_fit *fit)
 {
 	size_t length;
+	bool kept;
 	char *plan = scanlatch_fit_plan(fit, options->write - 1, &length);
 	if (plan == NULL)
 		return memory_error();
 	if (strcmp(options->file, "-") == 0)
 		return print_string(plan);
-	struct arena *arena = arena_create();
-	const int code = arena != NULL ? write_file(arena, options->file, plan, length) : memory_error();
-	arena_destroy(arena);
+	const bool good = write_output(options->file, plan, length, &kept);
+	if (good && !options->common.json)
+		print_written(options->file, length, kept);
 	scanlatch_free(plan);
-	return code;
+	return good ? EXIT_GOOD : EXIT_SYSTEM;
 }
 
 static int finish(const struct fit_options *options, const scanlatch_fit *fit)
 {
 	const size_t count = scanlatch_fit_count(fit);
-	if (options->write > 0 && count > 0) {
-		if (options->write <= count)
-			return write_plan(options, fit);
+	const bool writes = options->write > 0 && options->write <= count, lacks = count > 0 && options->write > count;
+	int code = count > 0 && !lacks ? EXIT_GOOD : EXIT_FOUND;
+	if (options->common.json || (!writes && !lacks))
+		code = worse(code, print_string(options->common.json ? scanlatch_fit_json(fit) : scanlatch_fit_text(fit)));
+	if (lacks)
 		fprintf(stderr, "scanlatch fit: --write: wanted one of %zu layout%s, found %u; nothing was written\n", count,
 		        count == 1 ? "" : "s", options->write);
-		return EXIT_FOUND;
-	}
-	const int code = print_string(options->common.json ? scanlatch_fit_json(fit) : scanlatch_fit_text(fit));
-	return worse(code, count > 0 ? EXIT_GOOD : EXIT_FOUND);
+	return writes ? worse(code, write_plan(options, fit)) : code;
 }
 
 static int search(const struct fit_options *options)
@@ -200,5 +181,7 @@ int command_fit(int argument_count, char **arguments)
 	options.file = wanted == 1 ? arguments[optind] : NULL;
 	if (wanted == 1 && (options.file[0] == '\0' || options.file[strlen(options.file) - 1] == '/'))
 		return usage_error("fit", "--write: wanted a file, found \"%s\"", options.file);
+	if (wanted == 1 && options.common.json && strcmp(options.file, "-") == 0)
+		return usage_error("fit", "--write: wanted a file, as the JSON document goes to standard output");
 	return search(&options);
 }

@@ -30,7 +30,7 @@ static const char help[] =
 	"file's name, as in NAME.LABEL.bin.\n"
 	"\n"
 	"Options:\n"
-	"  -o, --output FILE  where the plan goes\n"
+	"  -o, --output FILE  where the plan goes; folders that are missing are made\n"
 	"      --cut SIGNAL   cut lines at the leading edge of this signal\n"
 	"      --near         pin the state of every cell, so that the plan gives back the same bytes\n"
 	"      --bank N       lift what the chips hold with the jumpers set to N (default 0)\n"
@@ -91,30 +91,13 @@ static bool take(void *target, int option, const char *value)
 	return true;
 }
 
-static int report_write(const struct write_failure *failure)
-{
-	fprintf(stderr, "scanlatch: cannot %s %s: %s\n", failure->step, failure->path, strerror(failure->error));
-	return EXIT_SYSTEM;
-}
-
-// Writes the plan whole or not at all.
+// Writes the plan whole or not at all. A JSON document stays alone on standard output.
 static int write_plan(const struct options *options, const char *plan)
 {
-	struct arena *arena = arena_create();
-	const char *path = options->output, *slash = strrchr(path, '/'), *folder = ".";
-	struct output_file file = {.name = slash != NULL ? slash + 1 : path, .bytes = plan, .length = strlen(plan)};
-	struct write_failure failure;
-	int code = EXIT_GOOD;
-	if (arena != NULL && slash != NULL)
-		folder = slash == path ? "/" : arena_copy(arena, path, (size_t)(slash - path));
-	if (arena == NULL || folder == NULL)
-		code = memory_error();
-	else if (!file_write_all(arena, folder, &file, 1, &failure))
-		code = report_write(&failure);
-	else if (!options->common.json)
-		printf("%s %s (%zu bytes)\n", file.kept ? "kept" : "wrote", path, file.length);
-	arena_destroy(arena);
-	return code;
+	bool kept;
+	if (!options->common.json)
+		return write_result(options->output, plan);
+	return write_output(options->output, plan, strlen(plan), &kept) ? EXIT_GOOD : EXIT_SYSTEM;
 }
 
 static int report(const scanlatch_lift *lift, const struct options *options)
@@ -214,7 +197,7 @@ static int show_in_git(char **arguments, const struct options *options, scanlatc
 	else if (status == READ_MEMORY)
 		code = memory_error();
 	else {
-		fprintf(stderr, "scanlatch: cannot read %s: %s\n", arguments[1], strerror(status == READ_IS_DIRECTORY ? EISDIR : errno));
+		print_line(stderr, "scanlatch: cannot read %s: %s", arguments[1], strerror(status == READ_IS_DIRECTORY ? EISDIR : errno));
 		code = EXIT_SYSTEM;
 	}
 	arena_destroy(arena);

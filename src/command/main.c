@@ -3,6 +3,7 @@
 #include <stdio.h>
 #include <string.h>
 
+#include "base/text.h"
 #include "command/command.h"
 
 const struct command commands[] = {
@@ -52,13 +53,14 @@ static int unknown_command(const char *name)
 {
 	for (size_t index = 0; index < sizeof later_commands / sizeof *later_commands; index++)
 		if (strcmp(name, later_commands[index]) == 0) {
-			fprintf(stderr, "scanlatch: the command \"%s\" is not carried out by this version yet\n", name);
+			print_line(stderr, "scanlatch: the command \"%s\" is not carried out by this version yet", name);
 			return EXIT_BAD;
 		}
-	fprintf(stderr, "scanlatch: there is no command \"%s\"; the commands are", name);
+	struct text names = {0};
 	for (size_t index = 0; index < command_count; index++)
-		fprintf(stderr, "%s %s", index == 0 ? "" : ",", commands[index].name);
-	fputs("\n", stderr);
+		text_printf(&names, "%s %s", index == 0 ? "" : ",", commands[index].name);
+	print_line(stderr, "scanlatch: there is no command \"%s\"; the commands are%s", name, text_string(&names));
+	text_release(&names);
 	return suggest_help();
 }
 
@@ -76,7 +78,7 @@ static int run(int argument_count, char **arguments)
 	if (strcmp(name, "-V") == 0 || strcmp(name, "--version") == 0)
 		return print_version();
 	if (name[0] == '-') {
-		fprintf(stderr, "scanlatch: unknown option \"%s\" before a command\n", name);
+		print_line(stderr, "scanlatch: unknown option \"%s\" before a command", name);
 		return suggest_help();
 	}
 	for (size_t index = 0; index < command_count; index++)

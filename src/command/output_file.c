@@ -31,7 +31,7 @@ static const char *folder_of(struct arena *arena, const char *path)
 
 static void report_failure(const struct write_failure *failure, const char *after)
 {
-	fprintf(stderr, "scanlatch: cannot %s %s: %s%s\n", failure->step, failure->path, strerror(failure->error), after);
+	print_line(stderr, "scanlatch: cannot %s %s: %s%s", failure->step, failure->path, strerror(failure->error), after);
 }
 
 static bool write_bytes(int descriptor, const char *bytes, size_t length)
@@ -102,11 +102,16 @@ bool write_output(const char *path, const char *bytes, size_t length, bool *kept
 	return good;
 }
 
+void print_written(const char *path, size_t length, bool kept)
+{
+	print_line(stdout, "%-5s %s (%zu bytes)", kept ? "kept" : "wrote", path, length);
+}
+
 int write_result(const char *path, const char *result)
 {
 	bool kept;
 	if (!write_output(path, result, strlen(result), &kept))
 		return EXIT_SYSTEM;
-	printf("%-5s %s (%zu bytes)\n", kept ? "kept" : "wrote", path, strlen(result));
+	print_written(path, strlen(result), kept);
 	return EXIT_GOOD;
 }

@@ -2,6 +2,7 @@
 #include <stdio.h>
 #include <string.h>
 
+#include "base/text.h"
 #include "command/command.h"
 
 static const char help[] =
@@ -30,11 +31,12 @@ static const struct option_table table = {"schema", help, "hV", long_options, NU
 static int unknown_schema(const char *name)
 {
 	const size_t count = scanlatch_schema_count();
-	fprintf(stderr, "scanlatch schema: there is no schema of \"%s\"; there are", name);
+	struct text names = {0};
 	for (size_t schema = 0; schema < count; schema++)
-		fprintf(stderr, "%s %s", schema == 0 ? "" : ",", scanlatch_schema_name(schema));
-	fputs("\nscanlatch: try \"scanlatch schema --help\"\n", stderr);
-	return EXIT_BAD;
+		text_printf(&names, "%s %s", schema == 0 ? "" : ",", scanlatch_schema_name(schema));
+	const int code = usage_error("schema", "there is no schema of \"%s\"; there are%s", name, text_string(&names));
+	text_release(&names);
+	return code;
 }
 
 int command_schema(int argument_count, char **arguments)

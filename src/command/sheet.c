@@ -18,7 +18,7 @@ static const char help[] =
 	"plans of such a set are looked for in the current folder.\n"
 	"\n"
 	"Options:\n"
-	"  -o, --output FILE  where the page goes; - for standard output\n"
+	"  -o, --output FILE  where the page goes, folders that are missing are made; - for standard output\n"
 	"      --strict       advice that fails counts like a must, on the page too\n"
 	"      --json         one JSON document instead of text, of what was written\n"
 	"      --color WHEN   auto, always or never\n"
@@ -136,7 +136,7 @@ static int write_page(const struct sheet_options *options, const struct sheet_jo
 		return EXIT_SYSTEM;
 	if (options->common.json)
 		return print_json(options, job, kept);
-	printf("%-5s %s (%zu bytes)\n", kept ? "kept" : "wrote", options->output, strlen(job->page));
+	print_written(options->output, strlen(job->page), kept);
 	print_outcome(stdout, job);
 	return EXIT_GOOD;
 }

@@ -81,7 +81,7 @@ bool banks_fill(scanlatch_images *images, scanlatch_messages *messages);
 // Makes images of a plan. `preferences`: for each member the states that its cells should keep; NULL: none. NULL after reporting.
 scanlatch_images *images_make(const scanlatch_plan *plan, const struct preference *const *preferences, scanlatch_messages *messages);
 
-// What messages call a file: its path, or "standard input" for "-". Cannot fail.
+// What messages call a file: its path, "standard input" for "-", and two quotes for an empty one. Cannot fail.
 const char *source_label(const char *file);
 
 // A source of a file's label alone, for messages about it. NULL when memory is out.

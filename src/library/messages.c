@@ -77,7 +77,7 @@ char *scanlatch_messages_text(const scanlatch_messages *messages, bool colour)
 
 const char *source_label(const char *file)
 {
-	return strcmp(file, "-") == 0 ? "standard input" : file;
+	return strcmp(file, "-") == 0 ? "standard input" : file[0] == '\0' ? "\"\"" : file;
 }
 
 const struct source *source_of_name(scanlatch_messages *messages, const char *file)

@@ -1,7 +1,10 @@
 #include <errno.h>
+#include <stdlib.h>
+#include <string.h>
 #include <sys/stat.h>
 
 #include "base/arena.h"
+#include "base/file.h"
 #include "catalogue/catalogue.h"
 #include "library/library.h"
 #include "plan/characters.h"
@@ -74,6 +77,48 @@ struct plan_set *plan_set_load(const char *name, const char *bytes, size_t lengt
 		return plans;
 	plan_set_destroy(plans);
 	return NULL;
+}
+
+static bool is_named_before(const struct set *set, size_t bank)
+{
+	for (size_t before = 0; before < bank; before++)
+		if (strcmp(set->banks[before].path, set->banks[bank].path) == 0)
+			return true;
+	return false;
+}
+
+static void put_plan_files(struct arena *arena, const struct source *source, struct text *out)
+{
+	struct diagnostics *unsaid = diagnostics_create();
+	struct set *set = unsaid != NULL ? set_read(source, unsaid) : NULL;
+	for (size_t bank = 0; set != NULL && bank < set->bank_count; bank++) {
+		const char *path = is_named_before(set, bank) ? "" : set_bank_path(arena, set, bank);
+		out->failed = out->failed || path == NULL;
+		if (path != NULL && path[0] != '\0')
+			text_put_bytes(out, path, strlen(path) + 1);
+	}
+	text_put_bytes(out, "", 1);
+	out->failed = out->failed || unsaid == NULL;
+	set_destroy(set);
+	diagnostics_destroy(unsaid);
+}
+
+char *scanlatch_set_plans(const char *path, const char *name)
+{
+	struct arena *arena = arena_create();
+	struct text files = {0};
+	struct source source = {name, NULL, 0};
+	char *bytes, *result = NULL;
+	if (arena != NULL && file_read(arena, path, SCANLATCH_PLAN_BYTES, &bytes, &source.length) == READ_OK) {
+		source.bytes = bytes;
+		if (source_is_set(&source))
+			put_plan_files(arena, &source, &files);
+	}
+	if (files.length > 0 && !files.failed && (result = malloc(files.length)) != NULL)
+		memcpy(result, files.bytes, files.length);
+	text_release(&files);
+	arena_destroy(arena);
+	return result;
 }
 
 void plan_set_destroy(struct plan_set *plans)

@@ -143,6 +143,17 @@ static bool refuse_set(struct reader *reader, const struct node *root)
 	return true;
 }
 
+// True if the document is neither a plan nor meant to be one, so that what else it lacks is no news; reported.
+static bool refuse_other(struct reader *reader, const struct node *root, const char *what)
+{
+	if (root->kind != NODE_MAPPING || node_value(root, plan_keys[PLAN_VERSION].name) != NULL ||
+	    key_is_misspelt(root, plan_keys, PLAN_KEYS, PLAN_VERSION))
+		return false;
+	diagnose(reader->diagnostics, RULE_MISSING_KEY, root->place, "%s needs the key \"%s\"", what, plan_keys[PLAN_VERSION].name);
+	diagnose_hint(reader->diagnostics, "plans and boards begin with scanlatch: 1, sets of plans with scanlatch-set: 1; other YAML files are none");
+	return true;
+}
+
 static void hint_board(struct reader *reader, const struct node *root, const struct node **values)
 {
 	if (values[PLAN_LINES] == NULL && values[PLAN_FRAME] == NULL && values[PLAN_MACHINE] != NULL &&
@@ -183,7 +194,7 @@ static void read_root(struct reader *reader, const struct node *root)
 	struct plan *plan = reader->plan;
 	const struct node *values[PLAN_KEYS];
 	const char *what = reader->board ? "a board" : "a plan";
-	if (refuse_set(reader, root) || !read_mapping(reader, root, what, reader->board ? board_keys : plan_keys, PLAN_KEYS, values))
+	if (refuse_set(reader, root) || refuse_other(reader, root, what) || !read_mapping(reader, root, what, reader->board ? board_keys : plan_keys, PLAN_KEYS, values))
 		return;
 	report_elsewhere(reader, root, what, set_strays, COUNT_OF(set_strays));
 	if (!reader->board)
@@ -212,10 +223,15 @@ static void read_root(struct reader *reader, const struct node *root)
 
 const char *printable_base_name(struct arena *arena, const char *path)
 {
-	const char *slash = strrchr(path, '/');
-	const char *name = slash != NULL ? slash + 1 : path;
+	size_t end = strlen(path), start;
+	while (end > 1 && path[end - 1] == '/')
+		end--;
+	for (start = end; start > 0 && path[start - 1] != '/'; start--)
+		;
+	if (start == end && end > 0) // the root
+		start--;
 	struct text shown = {0};
-	excerpt_put_printable(name, strlen(name), &shown);
+	excerpt_put_printable(path + start, end - start, &shown);
 	const char *copy = shown.failed ? NULL : arena_copy(arena, text_string(&shown), shown.length);
 	text_release(&shown);
 	return copy;

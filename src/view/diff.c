@@ -275,8 +275,7 @@ static void put_changes(struct report *report, const struct comparison *comparis
 	}
 }
 
-// Why images do not do what the plan says.
-static void put_failures(struct text *out, const struct plan_difference *plan)
+void put_failures(struct text *out, const struct plan_difference *plan)
 {
 	for (enum proof_kind kind = PROOF_CLOSURE; plan->images != NULL && kind < PROOF_COUNT; kind++)
 		if (proof_is_must(kind) && plan->images->proof[kind].verdict == VERDICT_FAIL)

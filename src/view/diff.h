@@ -78,6 +78,7 @@ bool view_difference_svg(struct text *out, const struct picture *picture, const 
 //   "plans": [ { "banks": [numbers] (of sets), "only": "old" or "new" where only that set has the banks; then no further keys
 //                "same_timeline", "musts", "advice": { "old": [names of proofs that fail], "new": […] },
 //                "changes_unknown": why what images do cannot be read out of them, so that their changes are not listed,
+//                "failures": { NAME: the proof's result, as view_proofs_json has it } of the musts that fail in images,
 //                "facts": [ { "what": "frame", "colour", "speed of the chips" or "limits", "old", "new": in words, "same" } ],
 //                "changes": [ { "section", "kind", "lines": [names of the line types that it is of; only in section "lines"], "what", "old",
 //                               "new", "also": what goes with it, "cells": later or longer, "ticks": TICKS, exact time shift (_s, _us);
@@ -106,6 +107,8 @@ void put_chip_fate(struct text *out, const struct chip_difference *chip);
 const char *chips_advice(const struct difference *difference);
 // "bank 0 (harbour)", "banks 0, 2 and 3 (harbour, was pier)".
 void put_bank_numbers(struct text *out, const struct plan_difference *plan);
+// Why images do not do what the plan says: the musts that fail in them, each as view_proof puts it. Nothing of other pairs.
+void put_failures(struct text *out, const struct plan_difference *plan);
 // Whether facts and verdicts are of two machines: of images, if what they do was read out of them.
 bool tells_facts(const struct plan_difference *plan);
 bool same_timeline(const struct plan_difference *plan);

@@ -3,6 +3,7 @@
 #include "base/text.h"
 #include "view/diff.h"
 #include "view/figures.h"
+#include "view/proofs.h"
 
 static json_t *strings_json(const char *const *strings, size_t count)
 {
@@ -89,6 +90,16 @@ static void put_comparison(json_t **object, const struct comparison *comparison)
 	json_put(object, "changes", changes);
 }
 
+// The musts that fail in images.
+static json_t *failures_json(const struct proofs *proofs)
+{
+	json_t *object = json_object();
+	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
+		if (proof_is_must(kind) && proofs->proof[kind].verdict == VERDICT_FAIL)
+			json_put(&object, proof_name(kind), view_proof_json(proofs, kind));
+	return object;
+}
+
 static json_t *plan_json(const struct plan_difference *plan)
 {
 	json_t *object = json_object(), *banks = json_array();
@@ -106,6 +117,8 @@ static json_t *plan_json(const struct plan_difference *plan)
 	json_put(&object, "musts", both_json(plan->old_musts, plan->now_musts));
 	json_put(&object, "advice", both_json(plan->old_advice, plan->now_advice));
 	put_string(&object, "changes_unknown", plan->unseen);
+	if (plan->images != NULL && plan->images_musts[0] != '\0')
+		json_put(&object, "failures", failures_json(plan->images));
 	put_comparison(&object, plan->comparison);
 	return object;
 }

@@ -139,6 +139,33 @@ static void put_changes(struct page *page, const struct plan_difference *plan)
 	text_put(page->out, "\n");
 }
 
+static size_t longest_run(const char *words, char mark)
+{
+	size_t longest = 0, run = 0;
+	for (; *words != '\0'; words++) {
+		run = *words == mark ? run + 1 : 0;
+		longest = run > longest ? run : longest;
+	}
+	return longest;
+}
+
+// As in a terminal, in a fence that nothing in it can end.
+static void put_proofs(struct page *page, const struct plan_difference *plan)
+{
+	struct text proofs = {0};
+	put_failures(&proofs, plan);
+	if (proofs.length > 0) {
+		const size_t run = longest_run(text_string(&proofs), '`'), fence = run < 3 ? 3 : run + 1;
+		put_heading(page, plan, "proofs of ");
+		text_put_repeated(page->out, '`', fence);
+		text_printf(page->out, "text\n%s", text_string(&proofs));
+		text_put_repeated(page->out, '`', fence);
+		text_put(page->out, "\n\n");
+	}
+	page->out->failed = page->out->failed || proofs.failed;
+	text_release(&proofs);
+}
+
 void view_difference_markdown(struct text *out, const struct difference *difference)
 {
 	struct page page = {out, {0}};
@@ -149,8 +176,10 @@ void view_difference_markdown(struct text *out, const struct difference *differe
 		put_facts(&page, &difference->plans[index]);
 	put_chips(&page, difference);
 	put_set(&page, difference);
-	for (size_t index = 0; index < difference->plan_count; index++)
+	for (size_t index = 0; index < difference->plan_count; index++) {
 		put_changes(&page, &difference->plans[index]);
+		put_proofs(&page, &difference->plans[index]);
+	}
 	out->failed = out->failed || page.words.failed;
 	text_release(&page.words);
 }

@@ -103,4 +103,7 @@ void view_must(struct text *out, const char *name, bool kept, const char *words,
 //   One without a place or state has "what" and "bank" only.
 json_t *view_proofs_json(const struct proofs *proofs);
 
+// The object of one proof. A new reference; NULL when memory is out.
+json_t *view_proof_json(const struct proofs *proofs, enum proof_kind kind);
+
 #endif

@@ -275,7 +275,7 @@ static void put_figures(json_t **object, const struct proofs *proofs, enum proof
 	}
 }
 
-static json_t *proof_json(const struct proofs *proofs, enum proof_kind kind)
+json_t *view_proof_json(const struct proofs *proofs, enum proof_kind kind)
 {
 	static const char *const verdict_words[] = {
 		[VERDICT_PASS] = "pass", [VERDICT_FAIL] = "fail", [VERDICT_ABSENT] = "absent",
@@ -300,6 +300,6 @@ json_t *view_proofs_json(const struct proofs *proofs)
 {
 	json_t *object = json_object();
 	for (enum proof_kind kind = PROOF_CLOSURE; kind < PROOF_COUNT; kind++)
-		json_put(&object, proof_name(kind), proof_json(proofs, kind));
+		json_put(&object, proof_name(kind), view_proof_json(proofs, kind));
 	return object;
 }

@@ -205,6 +205,14 @@ says 'rom0: is another part, burn its 131072 bytes'
 compare 0 tide-board-60.yaml images
 same 'images are the same' 'tide-board-60.yaml to images: the images do what the plan says; the images are the same bytes' "$(head -n 1 stdout)"
 compare 0 images/ tide-board-60.yaml
+same 'a folder with a slash' 'images to tide-board-60.yaml: the images do what the plan says; the images are the same bytes' "$(head -n 1 stdout)"
+compare 0 tide-board-60.yaml "$PWD/images//"
+same 'a folder with slashes' 'tide-board-60.yaml to images: the images do what the plan says; the images are the same bytes' "$(head -n 1 stdout)"
+mkdir images/below
+for folder in . ./ below/..; do
+	(cd images && "$SCANLATCH" diff ../tide-board-60.yaml $folder) >stdout
+	same "the folder $folder" 'tide-board-60.yaml to images: the images do what the plan says; the images are the same bytes' "$(head -n 1 stdout)"
+done
 "$SCANLATCH" build later.yaml -o images >/dev/null
 compare 1 images tide-board-60.yaml
 holds 'images of an older plan: a must fails' grep -q '^  musts in the images: FAIL: signals$' stdout
@@ -299,6 +307,15 @@ compare 2 tide-board-60.yaml bad.yaml
 sed 's/^name: .*/name: UPPER/' bad.yaml >worse.yaml
 compare 2 bad.yaml worse.yaml
 holds 'both are told of' sh -c 'grep -q "^bad.yaml:" stderr && grep -q "^worse.yaml:" stderr'
+compare 2 images other
+compare 2 tide-board-60.yaml images/pilot-station.rom0.bin
+holds 'an image alone: what to give' grep -q '^scanlatch diff: "images/pilot-station.rom0.bin" looks like an image: .* folder' stderr
+compare 2 images/pilot-station.rom0.hex tide-board-60.yaml
+holds 'an image alone in HEX: what to give' grep -q '^scanlatch diff: "images/pilot-station.rom0.hex" looks like an image: .* folder' stderr
+compare 2 bad.yaml tide-board-60.yaml
+holds 'a bad plan is no image' sh -c '! grep -q "looks like" stderr'
+compare 3 tide-board-60.yaml ''
+holds 'no name at all' grep -q '^"": error: cannot read a plan: ' stderr
 compare 2 images other
 holds 'two folders' grep -q 'wanted at least one plan or set, found two folders' stderr
 compare 2 - -

@@ -111,15 +111,70 @@ sed -i 's/^note: .*/note: last of all/' tide-board-60.yaml
 run 0 git diff
 holds 'a bad plan: where' grep -q '^pier-clock.yaml:[0-9]*:1: error: .*\[unknown-key\]$' "$work/stderr"
 same 'bad plans: words' 2 "$(grep -c '^not compared, the messages say why; "git diff --no-ext-diff" shows the text$' "$work/stdout")"
+same 'what is no plan: one error of each revision' 2 "$(grep -c '^pipeline.yaml.*: error: a plan needs the key "scanlatch" \[missing-key\]$' "$work/stderr")"
+same 'what is no plan: no others' 2 "$(grep -c '^pipeline.yaml' "$work/stderr")"
 holds 'the old one of two bad files is called so' grep -q '^pipeline.yaml (old):' "$work/stderr"
 holds 'after them, the next' grep -q "the plan's note: last of all" "$work/stdout"
 quiet git checkout -q .
 
-# A set: its plans are those of the working tree.
+# A set: its plans are those of the working tree, which the report says, as what changed in them is not in it.
 sed -i 's/1: pilot-station-625.yaml/1: pilot-station-525.yaml/' pilot-station.yaml
 run 0 git diff
 holds 'a set: bank 1' grep -q '^changes in bank 1 (pilot-station-525, was pilot-station-625)$' "$work/stdout"
 same 'a set: no words but these' '' "$(cat "$work/stderr")"
+quiet git checkout -q .
+mkdir sets
+sed -e 's/pilot-station-//g' -e 's/^note: .*//' -e '$a note: one' pilot-station.yaml >sets/station.yaml
+cp pilot-station-525.yaml sets/525.yaml
+cp pilot-station-625.yaml sets/625.yaml
+quiet git add sets
+quiet git commit -qm 'sets in a folder'
+sed -i 's/^note: .*/note: another/' sets/station.yaml
+sed -E -i 's/(region: front porch, +cells: )4/\15/' sets/625.yaml
+quiet git commit -qam 'a set and a plan of it'
+run 0 git log -p -1 --ext-diff --format= -- sets/station.yaml
+same 'a set: which plans' 'scanlatch diff sets/station.yaml
+both sides have the plans of the working tree: sets/525.yaml, sets/625.yaml
+what changed in these plans is not compared; chips may have to be burned again for it all the same' \
+	"$(head -n 3 "$work/stdout")"
+same 'a set: nothing else' '' "$(cat "$work/stderr")"
+run 0 git log -p -1 --ext-diff --format= -- sets/625.yaml
+same 'a plan: no such words' '' "$(grep 'working tree' "$work/stdout")"
+
+# Names that are relative to a folder, be it the one git is called in, or one that the working tree's own file shows.
+relative='^both sides have the plans of the working tree: sets/525.yaml, sets/625.yaml$'
+cd sets || exit 1
+run 0 git log -p -1 --ext-diff --format= --relative -- station.yaml
+same '--relative: the heading' 'scanlatch diff station.yaml' "$(head -n 1 "$work/stdout")"
+holds '--relative: the plans' grep -q "$relative" "$work/stdout"
+holds '--relative: compared' grep -q '^station.yaml: same timeline' "$work/stdout"
+run 0 git log -p -1 --ext-diff --format= -- station.yaml
+holds 'from its folder: the plans' grep -q "$relative" "$work/stdout"
+cd ..
+sed -i 's/^note: .*/note: a third/' sets/station.yaml
+run 0 git diff --relative=sets
+holds '--relative=FOLDER: the plans' grep -q "$relative" "$work/stdout"
+quiet git checkout -q .
+
+# A plan of a set with another name now: the older revisions' plans are not there.
+quiet git mv sets/625.yaml sets/fifty.yaml
+sed -i 's/625.yaml/fifty.yaml/' sets/station.yaml
+quiet git commit -qam 'a plan with another name'
+run 0 git log -p -1 --ext-diff --format= -- sets/station.yaml
+same 'a plan of a set is gone' 'scanlatch diff sets/station.yaml
+not compared: git hands over a set without its plans, and the working tree has none now of this name: sets/625.yaml' \
+	"$(cat "$work/stdout")"
+
+# Names of files cannot command a terminal.
+cp pier-clock.yaml $'a\e[31mX\nY.yaml'
+quiet git add -A
+quiet git commit -qm 'a name'
+sed -i 's/^note: .*/note: another/' $'a\e[31mX\nY.yaml'
+run 0 git diff
+same 'a name with control characters' 'scanlatch diff a?[31mX?Y.yaml' "$(head -n 1 "$work/stdout")"
+run 0 scanlatch diff --git $'a\e[31mX\nY.yaml'
+same 'not merged: a name with control characters' 'scanlatch diff a?[31mX?Y.yaml
+not merged yet' "$(cat "$work/stdout")"
 quiet git checkout -q .
 
 # Not merged.

@@ -69,6 +69,14 @@ compare 1 later.yaml old
 says '"picture", "border": "burst", between "breezeway" and "back porch": 1 cell earlier (9 ticks, 0.629 us)'
 compare 1 --markdown old later.yaml
 holds 'Markdown: the edit' grep -Fq '| lines | "picture", "border": "burst", between "breezeway" and "back porch" | 1 cell later (9 ticks, 0.629 us) |' stdout
+compare 1 old later.yaml
+sed -n '/^FAIL/,$p' stdout >proofs
+holds 'the proofs: a byte' grep -q '^ .* byte 0x.* at address 0x.* of chip rom2$' proofs
+compare 1 --markdown old later.yaml
+same 'Markdown: the proofs, as in the text' '```text
+'"$(cat proofs)"'
+```' "$(sed -n '/^```/,$p' stdout)"
+"$SCANLATCH" prove --json later.yaml rom0=old/tide-board-60.rom0.bin rom1=old/tide-board-60.rom1.bin rom2=old/tide-board-60.rom2.bin >proved.json
 compare 1 --json old later.yaml
 cat >judge.py <<'PYTHON'
 import json
@@ -78,8 +86,16 @@ change, = plan["changes"]
 assert (document["differs"], document["same_timeline"], plan["same_timeline"]) == (True, False, False), document
 assert plan["musts"] == {"old": ["signals"], "new": []} and "changes_unknown" not in plan, plan
 assert change["kind"] == "region-moved" and change["lines"] == ["picture", "border"] and change["cells"] == 1, change
+proved = json.load(open("proved.json", encoding="utf-8"))["proofs"]
+assert plan["failures"] == {"signals": proved["signals"]} and "address" in proved["signals"]["counterexample"], plan["failures"]
 PYTHON
 holds 'JSON: the edit' python3 -B judge.py
+edit later.yaml fence.yaml 's/region: (burst|back porch|breezeway)/region: "```` \1 <b>"/'
+compare 1 --markdown old fence.yaml
+holds 'Markdown: a fence that no name ends' grep -Fxq '`````text' stdout
+holds 'Markdown: the name is in the fence' sh -c 'sed "1,/^\`\`\`\`\`text/d; /^\`\`\`\`\`$/,\$d" stdout | grep -Fq "\`\`\`\` breezeway <b>"'
+compare 0 --json tide-board-60.yaml old
+holds 'JSON: no failures where none are' sh -c '! grep -q failures stdout'
 
 # Names are the plan's, whatever they are, and no names of the images' come up; holds written otherwise, too.
 edit later.yaml words.yaml 's/region: burst,/region: colour,/; s/picture/screen/; s/(at: )80\*\(row\/9\) \+ col/\1col + (row\/9)*0x50/'
@@ -175,6 +191,7 @@ says '"picture", "border": "sync", between "front porch" and "back porch": 1 cel
 says '"vertical": edge between "front porch" and "broad sync": 1 cell later (6 ticks, 0.444 us)'
 compare 1 --markdown kit.yaml old
 holds 'set, Markdown: bank 1 has changes' grep -q '^### changes in bank 1 (pilot-station-625)$' stdout
+same 'set, Markdown: proofs of bank 1 alone' '### proofs of bank 1 (pilot-station-625)' "$(grep '^### proofs' stdout)"
 compare 0 old pilot-station.yaml
 
 # Damaged: a bit of a signal in one cell, of the next state so that the frame is cut short, so that it hangs.

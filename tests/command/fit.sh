@@ -155,7 +155,7 @@ holds 'fewer than that: nothing was written' test ! -e plan.yaml
 fit 0 'written' --write 1 plan.yaml
 same 'written: says so' "wrote plan.yaml ($(wc -c <plan.yaml) bytes)" "$(cat stdout)"
 fit 0 'written again' --write 1 plan.yaml
-same 'written again: kept' "kept plan.yaml ($(wc -c <plan.yaml) bytes)" "$(cat stdout)"
+same 'written again: kept' "kept  plan.yaml ($(wc -c <plan.yaml) bytes)" "$(cat stdout)"
 fit 0 'written to standard output' --write 1 -
 same 'written to standard output: the same' "$(cat plan.yaml)" "$(cat stdout)"
 fit 0 'the file may stand anywhere' fourth.yaml --write 4 --top 2
@@ -164,6 +164,16 @@ fit 0 'into a folder' --write 1 new/folder/plan.yaml
 same 'into a folder: the same' "$(cat plan.yaml)" "$(cat new/folder/plan.yaml)"
 fit 0 'by a whole path' --write 1 "$work/whole.yaml"
 holds 'by a whole path: written' test -s whole.yaml
+fit 0 'JSON alone' --json
+report=$(cat stdout)
+fit 0 'written, JSON' --write 1 again.yaml --json
+same 'written, JSON: one document, as without' "$report" "$(cat stdout)"
+same 'written, JSON: the plan' "$(cat plan.yaml)" "$(cat again.yaml)"
+fit 1 'fewer than that, JSON' --stretched 0 --write 900 none.yaml --json
+holds 'fewer than that, JSON: one document' python3 -m json.tool stdout
+holds 'fewer than that, JSON: nothing was written' test ! -e none.yaml
+fit 2 'both to standard output' --write 1 - --json
+same 'both to standard output: nothing' '' "$(cat stdout)"
 : >file
 fit 3 'below a file' --write 1 file/plan.yaml
 holds 'below a file: says so' grep -q '^scanlatch: cannot .*; nothing was written$' stderr

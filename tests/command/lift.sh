@@ -45,7 +45,7 @@ same 'the file is what was printed' '' "$(diff "$work/plain.yaml" "$work/deep/li
 holds 'what was found is told' grep -q '^frame: 18 border, 216 picture, 25 border, 3 vertical sync$' "$work/out"
 holds 'and what was written' grep -q "^wrote $work/deep/lifted.yaml " "$work/out"
 ends 'again' 0 "$plan" "$work/images" -o "$work/deep/lifted.yaml"
-holds 'the same file is kept' grep -q "^kept $work/deep/lifted.yaml " "$work/out"
+holds 'the same file is kept' grep -q "^kept  $work/deep/lifted.yaml " "$work/out"
 ends 'to a folder' 3 "$plan" "$work/images" -o "$work/deep"
 ends '-o - is standard output' 0 "$plan" "$work/images" -o -
 same '-o -: the plan' '' "$(diff "$work/plain.yaml" "$work/out")"

@@ -233,4 +233,47 @@ print(*[crystal["hz"] for crystal in json.load(open("stdout"))["crystals"] if cr
 ends 'list crystals' 0 list crystals
 holds 'list crystals: name, frequency and use' grep -Eq '^17\.734475 MHz +17734475 +17734475 +4 times the subcarrier' stdout
 
+# Whatever a name or an option holds, nothing of it commands a terminal.
+quiet() {
+	local wanted=$1
+	shift
+	run "$@"
+	same "$(printf '%q ' "$@"): exit status" "$wanted" "$status"
+	holds "$(printf '%q ' "$@"): says something" test -s stdout -o -s stderr
+	same "$(printf '%q ' "$@"): nothing but text" '' "$(cat stdout stderr | tr -d '\n' | LC_ALL=C grep -a '[[:cntrl:]]' | cat -v)"
+}
+strange=$'x\e[31m\ty\nz'
+cp good.yaml "$strange.yaml"
+quiet 2 "$strange"
+quiet 2 "-$strange"
+quiet 2 schema "$strange"
+quiet 2 list "$strange"
+quiet 2 draw "$strange" good.yaml
+quiet 0 build good.yaml -o "$strange"
+quiet 0 build good.yaml -o "$strange" --near "$strange"
+quiet 3 build good.yaml -o good.yaml/"$strange"
+quiet 0 draw line "$strange.yaml" -o "$strange/line.svg"
+quiet 3 draw line good.yaml -o "good.yaml/$strange"
+quiet 0 sheet "$strange.yaml" -o "$strange/sheet.html"
+quiet 3 sheet good.yaml -o "good.yaml/$strange"
+quiet 0 fit --standard composite-525 --columns 80 --crystal '14.31818 MHz' --write 1 "$strange/fit.yaml"
+quiet 3 fit --standard composite-525 --columns 80 --crystal '14.31818 MHz' --write 1 "good.yaml/$strange"
+quiet 2 fit --standard composite-525 --columns 80 "$strange"
+quiet 1 diff slow.yaml "$strange.yaml"
+quiet 2 diff good.yaml "$strange/own-part.rom0.bin"
+quiet 2 prove good.yaml good.yaml "$strange"
+quiet 2 prove good.yaml "$strange.yaml"
+quiet 2 prove good.yaml "$strange=$strange.yaml"
+quiet 2 lift --text good.yaml "$strange.yaml"
+quiet 3 lift --git good.yaml "$strange.none"
+quiet 0 lift --git good.yaml "$strange.yaml"
+for command in check build prove diff draw sheet fit lift list schema; do
+	quiet 2 $command "--$strange"
+	quiet 2 $command "-$strange"
+	quiet 2 $command --color "$strange"
+done
+"$SCANLATCH" build "$OLDPWD/plans/pier-clock.yaml" -o "$strange" >/dev/null
+quiet 0 lift "$OLDPWD/plans/pier-clock.yaml" "$strange" -o "$strange/lifted.yaml"
+quiet 3 lift "$OLDPWD/plans/pier-clock.yaml" "$strange" -o "good.yaml/$strange"
+
 finish
