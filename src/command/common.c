@@ -84,14 +84,34 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 	return PARSED;
 }
 
+#define MOST_WITHOUT_MEMORY 1024
+
+// A line is not to be lost where memory is out: what fits is printed, and of it nothing but ASCII.
+__attribute__((format(printf, 3, 0)))
+static void put_line_without_memory(FILE *out, const char *before, const char *format, va_list arguments)
+{
+	char line[MOST_WITHOUT_MEMORY];
+	vsnprintf(line, sizeof line, format, arguments);
+	for (char *byte = line; *byte != '\0'; byte++)
+		if (*byte < ' ' || *byte > '~')
+			*byte = '?';
+	fprintf(out, "%s%s\n", before, line);
+}
+
+__attribute__((format(printf, 3, 0)))
 static void put_line(FILE *out, const char *before, const char *format, va_list arguments)
 {
 	struct text line = {0}, printable = {0};
+	va_list again;
+	va_copy(again, arguments);
 	text_put(&line, before);
 	text_vprintf(&line, format, arguments);
 	excerpt_put_printable(text_string(&line), line.length, &printable);
 	if (!line.failed && !printable.failed)
 		fprintf(out, "%s\n", text_string(&printable));
+	else
+		put_line_without_memory(out, before, format, again);
+	va_end(again);
 	text_release(&line);
 	text_release(&printable);
 }
