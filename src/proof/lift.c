@@ -65,6 +65,7 @@ static bool begin(struct lifting *lifting, const struct image *images)
 	const bool codes_listed = check_codes(lifting);
 	if (!choose_cut_signal(lifting) || !codes_listed)
 		return false;
+	lifting->images = images;
 	lifting->machine = machine_create(lifting->arena, &lifting->wiring, images, lifting->lift->options.bank);
 	return lifting->machine != NULL || lift_memory(lifting);
 }

@@ -30,6 +30,7 @@ struct lifting {
 	struct lift *lift;
 	struct arena *arena;           // of this work; results go to the lift's
 	const struct plan *plan;
+	const struct image *images;
 	const struct machine *machine;
 	struct wiring wiring;
 	struct feedback at;
@@ -44,6 +45,7 @@ struct lifting {
 	size_t content_count;
 	uint32_t normal_cells;         // the length of the commonest line, by time
 	int64_t normal_ticks;
+	uint32_t length_count;         // of lines in cells
 	size_t type_capacity;
 };
 
@@ -53,6 +55,9 @@ struct lifting {
 bool lift_walk(struct lifting *lifting);
 // Cuts the loop into lines, and turns it so that the frame's first cell is cell 0.
 bool lift_cut(struct lifting *lifting);
+// Whether the lines are a raster's; and says that there are none (returns false).
+bool lift_check_raster(struct lifting *lifting);
+bool lift_report_no_lines(struct lifting *lifting);
 // Looks for other loops.
 bool lift_find_loops(struct lifting *lifting);
 // Sorts lines by what they show, into contents; and divides these into regions.
@@ -70,8 +75,11 @@ bool lift_numbers_cells(const struct lifting *lifting);
 // "memory is out"; returns false.
 bool lift_memory(struct lifting *lifting);
 
-// The ticks of a cell that shows these signals. Cannot fail.
+// The ticks of a cell that shows these signals, and of a line. Cannot fail.
 int64_t lifted_cell_ticks(const struct lifting *lifting, uint64_t asserted);
+int64_t lifted_line_ticks(const struct lifting *lifting, const struct lifted_line *line);
+// Whether more than half of a line is sync. There is a signal to cut at. Cannot fail.
+bool lifted_mostly_sync(const struct lifting *lifting, const struct lifted_line *line);
 
 // Appends a block of so many lines of a content, whose regions (in the lift's arena, with holds and without names) make a line type;
 // one that is there already is taken again. False when memory is out.

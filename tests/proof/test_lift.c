@@ -317,6 +317,60 @@ static void no_rasters(void **test)
 	by_hand_destroy(hand);
 }
 
+// Lengths of which the commonest, 4 cells, takes a third of the time; all are multiples of its half, as short lines often are by chance.
+static void multiples_of_short_halves(void **test)
+{
+	(void)test;
+	struct by_hand *hand = board(6);
+	burn_loop(hand, "S--- S----- S--- S--------- S--- S-------", 0);
+	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
+	by_hand_destroy(hand);
+}
+
+// Short lines are a raster that power-up leads to soon, in which sync is off for most of the time, and that takes its share of states.
+static void short_lines(void **test)
+{
+	(void)test;
+	assert_loop(5, "S-..- S-..- SSS--", "picture: sync*1 back porch*1 picture*2{bits_4_0=2 + 5*row + col} front porch*1; "
+	            "vertical sync: broad sync*3 serration*2; | 2 picture 1 vertical sync");
+	struct by_hand *hand = board(5);
+	burn_loop(hand, "SSS-- SSS-- S-..-", 0);
+	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
+	by_hand_destroy(hand);
+	hand = board(5);
+	burn_loop(hand, "S-..- S-..- SSS--", 0);
+	for (uint32_t state = 15; state < 26; state++) // eleven states on the way
+		burn(hand, state + 1, state == 15 ? 0 : state, 0);
+	hand->plan.machine.has_start = true;
+	hand->plan.machine.start = 25;
+	assert_lifted(hand, plain, "picture: sync*1 back porch*1 picture*2{bits_4_0=2 + 5*row + col} front porch*1; "
+	              "vertical sync: broad sync*3 serration*2; | 2 picture 1 vertical sync");
+	hand->plan.machine.start = 26;
+	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
+	by_hand_destroy(hand);
+	hand = board(14);
+	burn_loop(hand, "S-..- S-..- SSS--", 0);
+	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
+	by_hand_destroy(hand);
+}
+
+// Lines of few lengths are a raster, though none of them takes half of the time.
+static void few_lengths(void **test)
+{
+	(void)test;
+	static const char loop[] = "S------- S-------- S--------- S------- S-------- S--------- S------- S-------- S--------- "
+		"S------- S-------- S---------";
+	struct by_hand *hand = board(7);
+	burn_loop(hand, loop, 0);
+	struct diagnostics *diagnostics = diagnostics_create();
+	struct lift *lift = lift_images(&hand->plan, hand->images, plain, diagnostics);
+	assert_non_null(lift);
+	assert_int_equal(lift->type_count, 3);
+	lift_destroy(lift);
+	diagnostics_destroy(diagnostics);
+	by_hand_destroy(hand);
+}
+
 static void other_loops(void **test)
 {
 	(void)test;
@@ -376,6 +430,9 @@ int main(void)
 		cmocka_unit_test(pinned_states),
 		cmocka_unit_test(decoded_signals),
 		cmocka_unit_test(no_rasters),
+		cmocka_unit_test(multiples_of_short_halves),
+		cmocka_unit_test(short_lines),
+		cmocka_unit_test(few_lengths),
 		cmocka_unit_test(other_loops),
 		cmocka_unit_test(laps_for_the_phase),
 	};

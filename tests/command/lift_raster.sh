@@ -1,0 +1,67 @@
+#!/bin/bash
+# What lift says of images that are no raster: blank, swapped and random ones, lines of random lengths.
+set -u
+. tests/report.sh
+
+work=$(mktemp -d) || exit 1
+trap 'rm -rf "$work"' EXIT
+
+# images PLAN: the plan's images in $work/PLAN.
+images() {
+	"$SCANLATCH" build "plans/$1.yaml" -o "$work/$1" --format bin >"$work/built" || fail "images of $1"
+}
+
+# fill BYTE FILE …: every byte becomes that one, in octal.
+fill() {
+	local byte=$1 file
+	shift
+	for file; do
+		tr '\000-\377' "\\$byte" <"$file" >"$work/filled" && mv "$work/filled" "$file"
+	done
+}
+
+# refused NAME PLAN IMAGES WORDS: lift refuses the images as no raster, prints no plan, and says the words.
+refused() {
+	"$SCANLATCH" lift "$2" "$3" >"$work/out" 2>"$work/err"
+	same "$1: status" 2 $?
+	same "$1: no plan" '' "$(cat "$work/out")"
+	same "$1: the rule" 1 "$(grep -c '\[lift-raster\]$' "$work/err")"
+	holds "$1: $4" grep -q -e "$4" "$work/err"
+}
+
+images harbour-mouth
+images mooring-board-counted
+images tide-board-60
+for plan in harbour-mouth mooring-board-counted tide-board-60; do
+	for byte in 377 000; do
+		rm -rf "$work/blank" && cp -r "$work/$plan" "$work/blank"
+		fill "$byte" "$work/blank"/*.bin
+		refused "$plan, all bytes $byte" "plans/$plan.yaml" "$work/blank" 'hint: chip "rom0" is blank: its [0-9]* bytes are all 0x'
+		same "$plan, all bytes $byte: each chip is named" "$(ls "$work/blank"/*.bin | wc -l)" "$(grep -c 'is blank' "$work/err")"
+	done
+	for seed in 1 2 3; do
+		rm -rf "$work/random" && cp -r "$work/$plan" "$work/random"
+		/usr/bin/python3 -c '
+import random, sys
+chance = random.Random(int(sys.argv[1]))
+for path in sys.argv[2:]:
+	length = len(open(path, "rb").read())
+	open(path, "wb").write(chance.randbytes(length))' "$seed" "$work/random"/*.bin
+		refused "$plan, random bytes $seed" "plans/$plan.yaml" "$work/random" "are these the board's images"
+	done
+done
+for chip in "$work/mooring-board-counted"/*.bin; do
+	for byte in 377 000; do
+		rm -rf "$work/blank" && cp -r "$work/mooring-board-counted" "$work/blank"
+		fill "$byte" "$work/blank/${chip##*/}"
+		refused "${chip##*/}, all bytes $byte" plans/mooring-board-counted.yaml "$work/blank" 'is blank'
+		same "${chip##*/}, all bytes $byte: the others are not" 1 "$(grep -c 'is blank' "$work/err")"
+	done
+done
+cp -r "$work/tide-board-60" "$work/tide-board-60-swapped"
+mv "$work/tide-board-60-swapped/tide-board-60.rom0.bin" "$work/first"
+mv "$work/tide-board-60-swapped/tide-board-60.rom2.bin" "$work/tide-board-60-swapped/tide-board-60.rom0.bin"
+mv "$work/first" "$work/tide-board-60-swapped/tide-board-60.rom2.bin"
+refused 'chips that are swapped' plans/tide-board-60.yaml "$work/tide-board-60-swapped" 'chips may be swapped'
+
+finish
