@@ -64,4 +64,51 @@ mv "$work/tide-board-60-swapped/tide-board-60.rom2.bin" "$work/tide-board-60-swa
 mv "$work/first" "$work/tide-board-60-swapped/tide-board-60.rom2.bin"
 refused 'chips that are swapped' plans/tide-board-60.yaml "$work/tide-board-60-swapped" 'chips may be swapped'
 
+# ---- rasters that no plan has room for
+
+# made KIND: images of 65,536 states in $work/made: "kinds", lines of 16 cells that differ in blanking, or "states", a plain raster whose
+# states are in no order.
+made() {
+	rm -rf "$work/made" && mkdir "$work/made"
+	/usr/bin/python3 - "$1" "$work/made" <<'MAKER'
+import random
+import sys
+chance, states = random.Random(6), list(range(1 << 16))
+if sys.argv[1] == "states":
+	chance.shuffle(states)
+rows = [0] * len(states)
+for cell, state in enumerate(states):
+	after = (cell + 1) % len(states)
+	sync = after % 16 < (12 if after < 64 else 2)
+	blank = chance.random() < 0.5 if sys.argv[1] == "kinds" else after % 16 < 4
+	rows[state] = states[after] | (not sync) << 16 | blank << 17
+for chip in range(3):
+	with open(f"{sys.argv[2]}/made.rom{chip}.bin", "wb") as file:
+		file.write(bytes(row >> 8 * chip & 0xFF for row in rows))
+MAKER
+}
+
+cat >"$work/made.yaml" <<'BOARD'
+scanlatch: 1
+name: made
+clock: { master: 14 MHz, dot: 1 tick, cell: 8 dots }
+signals:
+  sync: { role: composite sync, active: low }
+  blank: { role: blanking, active: high }
+machine: { form: loop, state: 16 bits }
+parts: { PIERROM: { address pins: 16, data pins: 8, access: [120 ns] } }
+chips: { part: PIERROM }
+BOARD
+made kinds
+"$SCANLATCH" lift "$work/made.yaml" "$work/made" >"$work/out" 2>"$work/err"
+same 'too many line types: status' 2 $?
+same 'too many line types: counted' '3' "$(sed -n 's/.*these images take \(.\)[0-9]* line types of [0-9]* regions and .* blocks of lines, or more.*\[lift-size\]$/\1/p' "$work/err")"
+made states
+"$SCANLATCH" lift "$work/made.yaml" "$work/made" >"$work/out" 2>"$work/err"
+same 'states in no order: status' 0 $?
+"$SCANLATCH" lift --near "$work/made.yaml" "$work/made" >"$work/out" 2>"$work/err"
+same 'states in no order, pinned: status' 2 $?
+holds 'states in no order, pinned: the rule' grep -q '\[lift-size\]$' "$work/err"
+holds 'states in no order, pinned: the hint' grep -q 'hint: without --near the plan is shorter' "$work/err"
+
 finish

@@ -174,6 +174,15 @@ static void turned_loops(void **test)
 	}
 }
 
+// Of line types of one name, the commonest has it as it is, wherever it comes first; the others are numbered.
+static void names_by_use(void **test)
+{
+	(void)test;
+	assert_loop(6, "S--u- S---- S---- S-u-- S---- SSSS-",
+	            "border 2: sync*1 breezeway*2 burst*1 blank*1; border: sync*1 blank*4; border 3: sync*1 breezeway*1 burst*1 blank*2; "
+	            "vertical sync: broad sync*4 serration*1; | 1 border 2 2 border 1 border 3 1 border 1 vertical sync");
+}
+
 static void interlaced_pulses(void **test)
 {
 	(void)test;
@@ -422,6 +431,7 @@ int main(void)
 	const struct CMUnitTest tests[] = {
 		cmocka_unit_test(regions_by_roles),
 		cmocka_unit_test(turned_loops),
+		cmocka_unit_test(names_by_use),
 		cmocka_unit_test(interlaced_pulses),
 		cmocka_unit_test(vertical_sync_without_serration),
 		cmocka_unit_test(vertical_sync_begun_elsewhere),
