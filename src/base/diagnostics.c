@@ -240,6 +240,11 @@ enum rule diagnostics_rule(const struct diagnostics *diagnostics, size_t index)
 	return index < diagnostics->count ? diagnostics->entries[index]->rule : RULE_OUT_OF_MEMORY;
 }
 
+const char *diagnostics_message(const struct diagnostics *diagnostics, size_t index)
+{
+	return index < diagnostics->count ? diagnostics->entries[index]->message : "memory is out";
+}
+
 bool diagnostics_has_system_error(const struct diagnostics *diagnostics)
 {
 	for (size_t index = 0; index < diagnostics->count; index++) {

@@ -52,6 +52,8 @@ size_t diagnostics_count(const struct diagnostics *diagnostics);
 
 // The rule of diagnostic `index` (0 … count-1 in the order added), for tests.
 enum rule diagnostics_rule(const struct diagnostics *diagnostics, size_t index);
+// The message of diagnostic `index`, as it was added; owned by the diagnostics.
+const char *diagnostics_message(const struct diagnostics *diagnostics, size_t index);
 
 // True if any error's rule stands for a refusal of the system (read, write, memory) and not for a bad input.
 bool diagnostics_has_system_error(const struct diagnostics *diagnostics);

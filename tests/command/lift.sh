@@ -144,6 +144,15 @@ holds 'laps: the same bytes' cmp "$work/laps/laps.rom0.bin" "$work/lapped/laps.r
 
 ends 'no images' 2 "$plan"
 ends 'no arguments' 2
+"$SCANLATCH" lift - rom0=- rom1="$work/images/tide-board-60.rom1.bin" rom2="$work/images/tide-board-60.rom2.bin" \
+	<"$work/board.yaml" >"$work/out" 2>"$work/err"
+same 'standard input twice: status' 2 $?
+holds 'standard input twice: said' grep -q 'only one of the board and its images can be standard input' "$work/err"
+ends 'two images of standard input' 2 "$plan" rom0=- rom1=- rom2="$work/images/tide-board-60.rom2.bin"
+holds 'two images of standard input: said' grep -q 'can be standard input' "$work/err"
+"$SCANLATCH" lift "$plan" rom0=- rom1="$work/images/tide-board-60.rom1.bin" rom2="$work/images/tide-board-60.rom2.bin" \
+	<"$work/images/tide-board-60.rom0.bin" >"$work/out" 2>"$work/err"
+same 'an image from standard input' 0 $?
 ends 'a bank that is no number' 2 --bank one "$plan" "$work/images"
 ends 'words and a file' 2 --text -o "$work/x.yaml" "$plan" "$work/images"
 head -c 1000 "$work/images/tide-board-60.rom1.bin" >"$work/short.bin"

@@ -111,4 +111,42 @@ same 'states in no order, pinned: status' 2 $?
 holds 'states in no order, pinned: the rule' grep -q '\[lift-size\]$' "$work/err"
 holds 'states in no order, pinned: the hint' grep -q 'hint: without --near the plan is shorter' "$work/err"
 
+# ---- what no plan builds
+
+# One bit more of stretch, in a line of the picture: its colour is out of step then.
+cp -r "$work/tide-board-60" "$work/stretched"
+for at in $((0x2000)) $((0x12000)); do
+	byte=$(od -An -tu1 -j "$at" -N 1 "$work/stretched/tide-board-60.rom2.bin")
+	printf "\\x$(printf %02x $((byte ^ 8)))" | dd of="$work/stretched/tide-board-60.rom2.bin" bs=1 seek="$at" conv=notrunc 2>/dev/null
+done
+"$SCANLATCH" lift plans/tide-board-60.yaml "$work/stretched" >"$work/lifted.yaml" 2>"$work/err"
+same 'colour that fails: status' 1 $?
+holds 'colour that fails: said' grep -q 'cannot be built as it stands: it fails the proof colour: line 22 takes 915 ticks.*\[lift-near\]$' "$work/err"
+"$SCANLATCH" build "$work/lifted.yaml" -o "$work/rebuilt" >"$work/out" 2>"$work/err"
+same 'colour that fails: the build' 1 $?
+holds 'colour that fails: the build says so too' grep -q '^FAIL  colour' "$work/out"
+
+# A line-frame machine of one kind bit, with three line types: vertical sync comes from the frame stage in two of four lines of a kind.
+/usr/bin/python3 - "$work" <<'MAKER'
+import sys
+line, frame = [], []
+for address in range(1 << 7):
+	cell, kind = address & 63, address >> 6
+	last = cell >= 19
+	line.append((0 if last else cell + 1) | last << 6 | (not 14 <= cell < 17) << 7)
+for address in range(1 << 4):
+	frame.append((address + 1) % 16 | (address < 4) << 4 | (address >= 2) << 5)
+open(f"{sys.argv[1]}/line.bin", "wb").write(bytes(line))
+open(f"{sys.argv[1]}/frame.bin", "wb").write(bytes(frame))
+MAKER
+sed 's/PIERROM: { address pins: 16/PIERROM: { address pins: 7/; s/ } }$/ }, BUOYROM: { address pins: 4, data pins: 8, access: [120 ns] } }/
+/blank:/c\  vs: { role: vertical sync, active: low, stage: frame }
+s/composite/horizontal/; s/^chips.*/chips: { line: { part: PIERROM }, frame: { part: BUOYROM } }/
+s/^machine.*/machine: { form: line-frame, line: { state: 6 bits, outputs: direct }, frame: { state: 4 bits, outputs: direct }, kind: 1 bit }/' \
+	"$work/made.yaml" >"$work/kinds.yaml"
+"$SCANLATCH" lift "$work/kinds.yaml" rom0="$work/line.bin" rom1="$work/frame.bin" >"$work/out" 2>"$work/err"
+same 'kinds that are short: status' 2 $?
+holds 'kinds that are short: said' grep -q 'no plan gives images like these: kind: 3 line types need 2 bits, found "1 bit" \[lift-size\]' "$work/err"
+holds 'kinds that are short: why' grep -q 'lines that differ in signals of the frame stage alone have kinds of their own' "$work/err"
+
 finish
