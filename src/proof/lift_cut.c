@@ -273,6 +273,22 @@ static uint32_t choose_first(struct lifting *lifting)
 	return any_vertical ? first : next_block(lifting, first);
 }
 
+// Says why the frame begins where it does, once its lines are in order.
+static bool judge_first(struct lifting *lifting)
+{
+	struct lift *lift = lifting->lift;
+	const bool loop = lifting->ends == NULL, counted = lifting->wiring.line.advance == ADVANCE_COUNT;
+	for (uint32_t line = 0; line < lift->line_count && !lift->vertical_sync; line++)
+		lift->vertical_sync = is_vertical(lifting, &lifting->lines[line]);
+	if (is_vertical(lifting, &lifting->lines[lift->line_count - 1]) && !is_vertical(lifting, &lifting->lines[0]))
+		lift->first = FIRST_AFTER_SYNC;
+	else if (loop && lifting->home_cell != NO_INDEX)
+		lift->first = counted ? FIRST_COUNTED : FIRST_HOME;
+	else
+		lift->first = loop || lift->renumbered ? FIRST_FREE : FIRST_NUMBERED;
+	return true;
+}
+
 // Turns the loop so that a line becomes the first.
 static bool turn_to(struct lifting *lifting, uint32_t start)
 {
@@ -363,5 +379,5 @@ bool lift_cut(struct lifting *lifting)
 		ahead = (cut + count - first) % count;
 	}
 	return turn_loop(lifting, first) && list_lines(lifting, ahead) && find_normal(lifting) && split_long_lines(lifting) &&
-	       lift_check_raster(lifting) && try_equal_lines(lifting) && turn_to(lifting, choose_first(lifting));
+	       lift_check_raster(lifting) && try_equal_lines(lifting) && turn_to(lifting, choose_first(lifting)) && judge_first(lifting);
 }

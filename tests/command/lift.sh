@@ -60,6 +60,23 @@ for chip in rom0 rom1 rom2; do
 	holds "pinned: the bytes of $chip" cmp "$work/images/tide-board-60.$chip.bin" "$work/pinned/tide-board-60.$chip.bin"
 done
 
+# ---- where the frame begins
+
+same 'after vertical sync: nothing is said of it' '' "$(grep -i '^# start of' "$work/plain.yaml")"
+same 'start: whose' '# The board starts in state 0x8000, 26460 cells into this frame; start below is the state of the frame'\''s first cell.' \
+	"$(grep '^# The board starts' "$work/plain.yaml")"
+for begun in 'mooring-board-counted line 0 of the frame stage' 'pier-clock where the counter is 0'; do
+	name=${begun%% *} where="${begun#* }, as in every plan, and not after vertical sync"
+	"$SCANLATCH" build "plans/$name.yaml" -o "$work/$name" --format bin >"$work/built" || fail "images of $name"
+	ends "$name" 0 "plans/$name.yaml" "$work/$name" -o "$work/$name.yaml"
+	holds "$name: its start, told" grep -qx "start of the frame: $where" "$work/out"
+	holds "$name: its start, in the plan" grep -qx "# Start of the frame: $where\." "$work/$name.yaml"
+done
+sed 's/line: vertical sync/line: border/' "$work/plain.yaml" >"$work/flat.yaml"
+"$SCANLATCH" build "$work/flat.yaml" -o "$work/flat" --format bin >"$work/built" 2>&1 || fail 'a frame without vertical sync is built'
+ends 'no vertical sync' 0 --text "$work/flat.yaml" "$work/flat"
+holds 'no vertical sync: said' grep -qx 'start of the frame: arbitrary, as there is no vertical sync' "$work/out"
+
 # ---- JSON and words
 
 ends 'JSON' 0 --json "$plan" "$work/images" -o "$work/beside.yaml"

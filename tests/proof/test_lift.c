@@ -165,6 +165,7 @@ static void turned_loops(void **test)
 		assert_string_equal(lift->types[lift->blocks[0].type].name, "border");
 		assert_string_equal(lift->types[lift->blocks[lift->block_count - 1].type].name, "vertical sync");
 		assert_int_equal(lift->line_count, 4);
+		assert_int_equal(lift->first, FIRST_AFTER_SYNC);
 		assert_int_equal(lift->lead_in_cells, 0);
 		assert_true(lift->has_start);
 		assert_int_equal(lift->start, lift->states[0]);
@@ -375,6 +376,8 @@ static void few_lengths(void **test)
 	struct lift *lift = lift_images(&hand->plan, hand->images, plain, diagnostics);
 	assert_non_null(lift);
 	assert_int_equal(lift->type_count, 3);
+	assert_int_equal(lift->first, FIRST_FREE);
+	assert_false(lift->vertical_sync);
 	lift_destroy(lift);
 	diagnostics_destroy(diagnostics);
 	by_hand_destroy(hand);
