@@ -111,6 +111,11 @@ holds 'a chip that has no name: what is wanted' grep -q 'wanted a name as NAME.L
 sed '/^lines:/,/^machine:/{/^machine:/!d}' "$plan" >"$work/board.yaml"
 ends 'a board' 0 "$work/board.yaml" "$work/images"
 same 'a board: the same but for its name' '' "$(diff <(sed s/tide-board-60.yaml/board.yaml/ "$work/plain.yaml") "$work/out")"
+sed '/fields:/d' "$work/board.yaml" >"$work/no-fields.yaml"
+ends 'a board without fields' 0 "$work/no-fields.yaml" "$work/images" -o "$work/found.yaml"
+holds 'a board without fields: they are found' grep -q 'fields: { bits_10_0: 10..0, bits_15_11: 15..11 }' "$work/found.yaml"
+holds 'a board without fields: each is told' grep -q 'hold: { bits_10_0: 80\*(row/9) + col, bits_15_11: row%9 }' "$work/found.yaml"
+holds 'a board without fields: the images keep to it' "$SCANLATCH" prove "$work/found.yaml" "$work/images"
 "$SCANLATCH" check "$work/board.yaml" >"$work/out" 2>"$work/err"
 same 'check of a board' 2 $?
 holds 'check of a board says what is missing' grep -q 'error: a plan needs the key "lines"' "$work/err"
