@@ -248,6 +248,11 @@ const char *diagnostics_first_error(const struct diagnostics *diagnostics)
 	return diagnostics->memory_failed ? "memory is out" : NULL;
 }
 
+const char *diagnostics_message(const struct diagnostics *diagnostics, size_t index)
+{
+	return index < diagnostics->count ? diagnostics->entries[index]->message : "memory is out";
+}
+
 bool diagnostics_has_system_error(const struct diagnostics *diagnostics)
 {
 	for (size_t index = 0; index < diagnostics->count; index++) {

@@ -52,6 +52,8 @@ size_t diagnostics_count(const struct diagnostics *diagnostics);
 
 // The rule of diagnostic `index` (0 … count-1 in the order added), for tests.
 enum rule diagnostics_rule(const struct diagnostics *diagnostics, size_t index);
+// The message of diagnostic `index`, as it was added; owned by the diagnostics.
+const char *diagnostics_message(const struct diagnostics *diagnostics, size_t index);
 
 // The message of the first error, without place, hint and rule, for reports that go on without what it refused; NULL if there is
 // none. The diagnostics own it.

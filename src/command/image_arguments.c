@@ -15,6 +15,17 @@ bool exists(const char *path)
 	return stat(path, &status) == 0;
 }
 
+// How many of a plan and its images, given as LABEL=FILE, are to be standard input.
+static int count_standard_input(char **arguments, int count)
+{
+	int found = strcmp(arguments[0], "-") == 0;
+	for (int index = 1; index < count; index++) {
+		const char *equals = strchr(arguments[index], '=');
+		found += equals != NULL && strcmp(equals, "=-") == 0;
+	}
+	return found;
+}
+
 int check_image_arguments(const char *command, const char *what, char **arguments, int count)
 {
 	if (count < 2)
@@ -28,6 +39,8 @@ int check_image_arguments(const char *command, const char *what, char **argument
 	for (int index = 1; !folder && index < count; index++)
 		if (strchr(arguments[index], '=') == NULL)
 			return usage_error(command, "wanted LABEL=FILE, found \"%s\"", arguments[index]);
+	if (count_standard_input(arguments, count) > 1)
+		return usage_error(command, "only one of the %s and its images can be standard input", what);
 	return EXIT_GOOD;
 }
 

@@ -63,6 +63,10 @@ struct scanlatch_lift {
 	bool found;
 };
 
+// Reads a plan that was lifted again: it must lay out the images' loop, and what it cannot be built for is reported as found. False after
+// reporting that it is none, or that memory is out.
+bool lift_verify(scanlatch_lift *lift, scanlatch_messages *messages);
+
 // Takes the bytes of a text as a string of its own; NULL (and the text released) if it failed.
 char *take_string(struct text *text);
 

@@ -2,7 +2,6 @@
 
 #include "base/arena.h"
 #include "base/excerpt.h"
-#include "catalogue/catalogue.h"
 #include "library/library.h"
 #include "proof/lift.h"
 #include "view/lift.h"
@@ -56,149 +55,6 @@ static bool write_plan(scanlatch_lift *lift, scanlatch_messages *messages)
 	return lift->plan != NULL || report_memory(messages);
 }
 
-// A plan that was lifted, read again.
-struct reread {
-	struct arena *arena;
-	struct diagnostics *diagnostics;
-	struct source source;
-	struct plan *plan;
-	struct timeline *timeline;
-};
-
-static void reread_plan(struct reread *reread, const scanlatch_lift *lift)
-{
-	const scanlatch_plan *board = lift->images->plan;
-	const unsigned bank = lift->lift->options.bank;
-	const struct catalogue *catalogue = catalogue_load(reread->arena, reread->diagnostics);
-	reread->source = (struct source){"the lifted plan", lift->plan, strlen(lift->plan)};
-	if (catalogue != NULL && board->set != NULL)
-		reread->plan = plan_read_for_set(&reread->source, catalogue, board->set->set, set_bank_shown(board->set->set, bank),
-		                                 reread->diagnostics);
-	else if (catalogue != NULL)
-		reread->plan = plan_read(&reread->source, catalogue, reread->diagnostics);
-	if (reread->plan != NULL)
-		reread->timeline = timeline_create(reread->plan, reread->diagnostics);
-}
-
-// Whether a timeline is the images' loop, so many times.
-static bool lays_out(const struct timeline *timeline, const struct lift *lift)
-{
-	const uint64_t cells = (uint64_t)lift->cell_count * lift->copies;
-	if (timeline->cell_count != cells || timeline->tick_count != lift->tick_count * lift->copies)
-		return false;
-	for (uint32_t copy = 0; copy < lift->copies; copy++)
-		if (memcmp(timeline->asserted + (size_t)copy * lift->cell_count, lift->asserted, lift->cell_count * sizeof *lift->asserted) != 0)
-			return false;
-	return true;
-}
-
-// Whether a byte of a chip is read with the jumpers set to a bank.
-static bool is_of_bank(const struct chip *chip, size_t offset, unsigned bank)
-{
-	const size_t address = offset / (chip->part->data_pins / 8);
-	for (unsigned pin = 0; pin < chip->part->address_pins; pin++)
-		if (chip->address[pin].kind == ADDRESS_BANK && (address >> pin & 1) != (bank >> chip->address[pin].index & 1))
-			return false;
-	return true;
-}
-
-static size_t count_differing(const struct chip *chip, const struct image *left, const struct image *right, unsigned bank,
-                              size_t *first)
-{
-	size_t count = 0;
-	for (size_t offset = 0; offset < left->length; offset++) {
-		if (left->bytes[offset] == right->bytes[offset] || !is_of_bank(chip, offset, bank))
-			continue;
-		if (count++ == 0)
-			*first = offset;
-	}
-	return count;
-}
-
-// Whether what failed did so for want of memory.
-static bool is_out_of_memory(const struct diagnostics *refusals)
-{
-	for (size_t index = 0; index < diagnostics_count(refusals); index++)
-		if (diagnostics_rule(refusals, index) == RULE_OUT_OF_MEMORY)
-			return true;
-	return false;
-}
-
-// Of images that no plan gives, such as those of two stages whose lines begin in different states.
-static void report_unbuilt(scanlatch_lift *lift, const struct diagnostics *refusals, scanlatch_messages *messages)
-{
-	size_t index = 0;
-	while (index + 1 < diagnostics_count(refusals) && rule_row(diagnostics_rule(refusals, index))->severity != SEVERITY_ERROR)
-		index++;
-	diagnose(messages->diagnostics, RULE_LIFT_NEAR, (struct place){lift->lift->plan->source, 0, 0},
-	         "the plan lays out the images' lines, but cannot be built as it stands: %s", rule_row(diagnostics_rule(refusals, index))->id);
-	diagnose_hint(messages->diagnostics, "no plan gives images like these; build it to see why");
-	lift->found = true;
-}
-
-// Builds the plan again and, where states are pinned, compares its images with those that it was lifted from. False after reporting that
-// memory is out.
-static bool compare_images(scanlatch_lift *lift, struct reread *reread, scanlatch_messages *messages)
-{
-	const struct plan *plan = lift->lift->plan;
-	struct table *table = table_create(reread->timeline, reread->diagnostics);
-	struct image *made = arena_array(reread->arena, plan->chip_count, sizeof *made);
-	const struct table *tables[1] = {table};
-	bool good = made != NULL && (table == NULL ? !is_out_of_memory(reread->diagnostics) : images_fill(tables, 1, reread->arena, made));
-	if (good && table == NULL)
-		report_unbuilt(lift, reread->diagnostics, messages);
-	for (size_t chip = 0; good && table != NULL && lift->lift->options.near && chip < plan->chip_count; chip++) {
-		size_t first = 0;
-		const size_t count =
-			count_differing(&plan->chips[chip], &made[chip], &lift->images->images[chip], lift->lift->options.bank, &first);
-		if (count == 0)
-			continue;
-		diagnose(messages->diagnostics, RULE_LIFT_NEAR, (struct place){lift->images->sources[chip], 0, 0},
-		         "the plan gives back other bytes for %zu of chip \"%s\", first at 0x%zX: 0x%02X, found 0x%02X", count,
-		         plan->chips[chip].label, first, made[chip].bytes[first], lift->images->images[chip].bytes[first]);
-		diagnose_hint(messages->diagnostics, "no plan says what rows hold that no cell of the frame reads, nor unwired pins");
-		lift->found = true;
-	}
-	table_destroy(table);
-	return good || report_memory(messages);
-}
-
-static void report_refusal(const scanlatch_lift *lift, const struct diagnostics *refusals, scanlatch_messages *messages)
-{
-	const size_t types = lift->lift->type_count;
-	const char *rule = diagnostics_count(refusals) > 0 ? rule_row(diagnostics_rule(refusals, 0))->id : "another timeline";
-	diagnose(messages->diagnostics, RULE_LIFT_SIZE, (struct place){lift->lift->plan->source, 0, 0},
-	         "a plan of these images, of %zu bytes and %zu line type%s, is beyond what the plan language takes: %s", strlen(lift->plan),
-	         types, types == 1 ? "" : "s", rule);
-	if (lift->lift->options.near)
-		diagnose_hint(messages->diagnostics, "without --near the plan is shorter");
-}
-
-// What is written is read again and held against the images.
-static bool verify(scanlatch_lift *lift, scanlatch_messages *messages)
-{
-	struct reread reread = {.arena = arena_create(), .diagnostics = diagnostics_create()};
-	bool good = reread.arena != NULL && reread.diagnostics != NULL;
-	if (good)
-		reread_plan(&reread, lift);
-	else
-		report_memory(messages);
-	if (good && is_out_of_memory(reread.diagnostics))
-		good = report_memory(messages);
-	if (good && (reread.timeline == NULL || !lays_out(reread.timeline, lift->lift))) {
-		good = false;
-		report_refusal(lift, reread.diagnostics, messages);
-	}
-	// A loop that was lifted freely has states: those of the images. To find others may take long.
-	if (good && (lift->lift->options.near || lift->lift->plan->machine.form == FORM_LINE_FRAME))
-		good = compare_images(lift, &reread, messages);
-	timeline_destroy(reread.timeline);
-	plan_destroy(reread.plan);
-	diagnostics_destroy(reread.diagnostics);
-	arena_destroy(reread.arena);
-	return good;
-}
-
 static bool find_cut(const struct plan *plan, const char *name, size_t *signal, scanlatch_messages *messages)
 {
 	*signal = SIZE_MAX;
@@ -235,7 +91,7 @@ static bool lift_all(scanlatch_lift *lift, const struct scanlatch_lift_options *
 	lift->found = lift->lift->loop_count > 0;
 	if (!list_files(lift))
 		return report_memory(messages);
-	return write_plan(lift, messages) && verify(lift, messages);
+	return write_plan(lift, messages) && lift_verify(lift, messages);
 }
 
 scanlatch_lift *scanlatch_lift_images(const scanlatch_images *images, const struct scanlatch_lift_options *options,

@@ -65,6 +65,7 @@ static bool begin(struct lifting *lifting, const struct image *images)
 	const bool codes_listed = check_codes(lifting);
 	if (!choose_cut_signal(lifting) || !codes_listed)
 		return false;
+	lifting->images = images;
 	lifting->machine = machine_create(lifting->arena, &lifting->wiring, images, lifting->lift->options.bank);
 	return lifting->machine != NULL || lift_memory(lifting);
 }
@@ -150,9 +151,9 @@ static bool run(struct lifting *lifting, const struct image *images)
 {
 	struct lift *lift = lifting->lift;
 	if (!begin(lifting, images) || !lift_walk(lifting) || !lift_cut(lifting) || !lift_find_loops(lifting) || !lift_place(lifting) ||
-	    !lift_divide(lifting) || !lift_name(lifting))
+	    !lift_divide(lifting) || !lift_check_size(lifting) || !lift_name(lifting))
 		return false;
-	if (!(lift->options.near ? lift_pin(lifting) : lift_hold(lifting)))
+	if (!(lift->options.near ? lift_pin(lifting) : lift_hold(lifting)) || !lift_name_types(lifting))
 		return false;
 	find_start(lifting);
 	lift->copies = laps_in_phase(lifting);

@@ -62,6 +62,15 @@ struct lift_loop {
 
 #define LIFT_LOOPS 8 // that are listed
 
+// Where the frame begins.
+enum lift_first {
+	FIRST_AFTER_SYNC,              // after vertical sync
+	FIRST_FREE,                    // anywhere, as there is none
+	FIRST_COUNTED,                 // where the counter of a loop is 0
+	FIRST_NUMBERED,                // where the state of a frame stage is 0
+	FIRST_HOME                     // where spare rows lead, since states are pinned
+};
+
 struct lift {
 	struct arena *arena;
 	const struct plan *plan;       // the board
@@ -75,6 +84,8 @@ struct lift {
 	uint64_t *asserted;            // [cell_count]: as a timeline has it, leads undone
 	uint32_t line_count;           // of the loop
 	uint32_t copies;               // laps of the loop in the frame: as many as the clock's phase asks
+	enum lift_first first;
+	bool vertical_sync;            // there is a line of it
 	bool has_start;                // the plan is to name the state of its first cell
 	uint32_t start;
 	bool renumbered;               // the images number their lines otherwise than a plan's frame stage does

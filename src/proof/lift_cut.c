@@ -1,12 +1,7 @@
 #include <string.h>
 
 #include "base/arena.h"
-#include "base/diagnostics.h"
 #include "proof/lift_work.h"
-
-// Of a raster, at least this share of the time is in lines of the commonest length, of half of it, or of a multiple of its half.
-#define RASTER_SHARE_NUMERATOR 1
-#define RASTER_SHARE_DENOMINATOR 2
 
 static bool cut_asserted(const struct lifting *lifting, uint32_t cell)
 {
@@ -20,22 +15,6 @@ static bool ends_after(const struct lifting *lifting, uint32_t cell)
 	if (lifting->ends != NULL)
 		return lifting->ends[cell];
 	return !cut_asserted(lifting, cell) && cut_asserted(lifting, next);
-}
-
-static bool report_no_lines(struct lifting *lifting)
-{
-	const uint32_t cells = lifting->lift->cell_count;
-	if (lifting->ends != NULL) {
-		diagnose(lifting->diagnostics, RULE_LIFT_RASTER, lifting->place,
-		         "the images go through %u cell%s and never end a line: step is asserted nowhere in their loop", cells,
-		         cells == 1 ? "" : "s");
-		return false;
-	}
-	diagnose(lifting->diagnostics, RULE_LIFT_RASTER, lifting->place,
-	         "no raster: signal \"%s\" is asserted %s in the images' loop of %u cell%s", lifting->plan->signals[lifting->cut_signal].name, cut_asserted(lifting, 0) ? "everywhere" : "nowhere", cells,
-	         cells == 1 ? "" : "s");
-	diagnose_hint(lifting->diagnostics, "lines are cut at its leading edge; --cut names another signal");
-	return false;
 }
 
 // Turns the loop so that a cell becomes cell 0.
@@ -105,7 +84,7 @@ static bool list_lines(struct lifting *lifting, uint32_t ahead)
 	return true;
 }
 
-static int64_t line_ticks(const struct lifting *lifting, const struct lifted_line *line)
+int64_t lifted_line_ticks(const struct lifting *lifting, const struct lifted_line *line)
 {
 	int64_t ticks = 0;
 	for (uint32_t cell = 0; cell < line->cells; cell++)
@@ -123,16 +102,18 @@ static bool find_normal(struct lifting *lifting)
 	for (uint32_t line = 0; line < lift->line_count; line++)
 		sums[lifting->lines[line].cells] += lifting->lines[line].cells;
 	lifting->normal_cells = lifting->lines[0].cells;
-	for (uint32_t cells = 1; cells <= lift->cell_count; cells++)
+	for (uint32_t cells = 1; cells <= lift->cell_count; cells++) {
+		lifting->length_count += sums[cells] > 0;
 		if (sums[cells] > sums[lifting->normal_cells])
 			lifting->normal_cells = cells;
+	}
 	for (uint32_t line = 0; line < lift->line_count && lifting->normal_ticks == 0; line++)
 		if (lifting->lines[line].cells == lifting->normal_cells)
-			lifting->normal_ticks = line_ticks(lifting, &lifting->lines[line]);
+			lifting->normal_ticks = lifted_line_ticks(lifting, &lifting->lines[line]);
 	return true;
 }
 
-static bool is_mostly_sync(const struct lifting *lifting, const struct lifted_line *line)
+bool lifted_mostly_sync(const struct lifting *lifting, const struct lifted_line *line)
 {
 	uint32_t asserted = 0;
 	for (uint32_t cell = 0; cell < line->cells; cell++)
@@ -144,7 +125,7 @@ static bool is_mostly_sync(const struct lifting *lifting, const struct lifted_li
 static uint32_t normal_lines(const struct lifting *lifting, const struct lifted_line *line)
 {
 	if (lifting->cut_signal < 0 || line->cells <= lifting->normal_cells || line->cells % lifting->normal_cells != 0 ||
-	    !is_mostly_sync(lifting, line))
+	    !lifted_mostly_sync(lifting, line))
 		return 1;
 	return line->cells / lifting->normal_cells;
 }
@@ -169,35 +150,6 @@ static bool split_long_lines(struct lifting *lifting)
 	lifting->lines = split;
 	lift->line_count = lines;
 	return true;
-}
-
-// The share of some unit (cells or ticks) that is in lines of normal length or a multiple of its half.
-static bool is_regular(uint64_t regular, uint64_t all)
-{
-	return regular * RASTER_SHARE_DENOMINATOR >= all * RASTER_SHARE_NUMERATOR;
-}
-
-static bool check_raster(struct lifting *lifting)
-{
-	const struct lift *lift = lifting->lift;
-	uint64_t cells = 0, ticks = 0;
-	uint32_t shortest = UINT32_MAX, longest = 0;
-	for (uint32_t index = 0; index < lift->line_count; index++) {
-		const struct lifted_line *line = &lifting->lines[index];
-		const int64_t length = line_ticks(lifting, line);
-		cells += 2 * line->cells % lifting->normal_cells == 0 ? line->cells : 0;
-		ticks += 2 * length % lifting->normal_ticks == 0 ? (uint64_t)length : 0;
-		shortest = line->cells < shortest ? line->cells : shortest;
-		longest = line->cells > longest ? line->cells : longest;
-	}
-	if (lifting->ends != NULL || is_regular(cells, lift->cell_count) || is_regular(ticks, (uint64_t)lift->tick_count))
-		return true;
-	diagnose(lifting->diagnostics, RULE_LIFT_RASTER, lifting->place,
-	         "no raster: cut at \"%s\", the images' loop of %u cells has %u lines of %u to %u cells; the commonest length, %u cells, "
-	         "and its halves take less than half of the time", lifting->plan->signals[lifting->cut_signal].name, lift->cell_count,
-	         lift->line_count, shortest, longest, lifting->normal_cells);
-	diagnose_hint(lifting->diagnostics, "are these the board's images, and its wires? --cut names another signal to cut lines at");
-	return false;
 }
 
 // Whether a line is of vertical sync: by the signal of that role, or by sync that takes more than half of it.
@@ -321,6 +273,22 @@ static uint32_t choose_first(struct lifting *lifting)
 	return any_vertical ? first : next_block(lifting, first);
 }
 
+// Says why the frame begins where it does, once its lines are in order.
+static bool judge_first(struct lifting *lifting)
+{
+	struct lift *lift = lifting->lift;
+	const bool loop = lifting->ends == NULL, counted = lifting->wiring.line.advance == ADVANCE_COUNT;
+	for (uint32_t line = 0; line < lift->line_count && !lift->vertical_sync; line++)
+		lift->vertical_sync = is_vertical(lifting, &lifting->lines[line]);
+	if (is_vertical(lifting, &lifting->lines[lift->line_count - 1]) && !is_vertical(lifting, &lifting->lines[0]))
+		lift->first = FIRST_AFTER_SYNC;
+	else if (loop && lifting->home_cell != NO_INDEX)
+		lift->first = counted ? FIRST_COUNTED : FIRST_HOME;
+	else
+		lift->first = loop || lift->renumbered ? FIRST_FREE : FIRST_NUMBERED;
+	return true;
+}
+
 // Turns the loop so that a line becomes the first.
 static bool turn_to(struct lifting *lifting, uint32_t start)
 {
@@ -402,7 +370,7 @@ bool lift_cut(struct lifting *lifting)
 {
 	uint32_t first = next_line(lifting, 0), ahead = 0;
 	if (first == NO_INDEX)
-		return report_no_lines(lifting);
+		return lift_report_no_lines(lifting);
 	if (!fix_home(lifting))
 		return false;
 	if (lifting->home_cell != NO_INDEX) {
@@ -411,5 +379,5 @@ bool lift_cut(struct lifting *lifting)
 		ahead = (cut + count - first) % count;
 	}
 	return turn_loop(lifting, first) && list_lines(lifting, ahead) && find_normal(lifting) && split_long_lines(lifting) &&
-	       check_raster(lifting) && try_equal_lines(lifting) && turn_to(lifting, choose_first(lifting));
+	       lift_check_raster(lifting) && try_equal_lines(lifting) && turn_to(lifting, choose_first(lifting)) && judge_first(lifting);
 }

@@ -85,6 +85,12 @@ int64_t sequence_at(const struct sequence *sequence, uint32_t index)
 	return form_at(&form, index);
 }
 
+unsigned sequence_terms(const struct sequence *sequence)
+{
+	const struct form form = form_of(sequence);
+	return (form.b != 0 ? 1u : 0u) + (form.period > 0 && form.a != 0 ? 1u : 0u);
+}
+
 // Terms in the order in which they are put.
 struct sum {
 	struct text *out;

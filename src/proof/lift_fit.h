@@ -29,6 +29,9 @@ void sequence_add(struct sequence *sequence, int64_t value);
 // The value at an index below `count`, up to a multiple of the modulus. Cannot fail.
 int64_t sequence_at(const struct sequence *sequence, uint32_t index);
 
+// How many terms a sequence's expression has beside its constant: 0, 1 or 2. Cannot fail.
+unsigned sequence_terms(const struct sequence *sequence);
+
 // Puts the sum of two sequences as an expression in two variables, "0x4B17 + 80*(row/9) + col"; of the second, the steps
 // alone count. A sequence of one value has none. With a modulus, the sum is taken modulo it: "(12 + row) % 16". Failure is text's.
 void sequences_put(struct text *out, const struct sequence *rows, const char *row, const struct sequence *columns, const char *column,

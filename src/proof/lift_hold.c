@@ -169,6 +169,44 @@ static int regular_high(const struct lifting *lifting, unsigned low)
 	return high;
 }
 
+// The most terms of a field's expressions wherever picture is shown; 0 if some block has none, exactly and as a whole.
+static unsigned most_terms(const struct lifting *lifting, const struct lift_field *field)
+{
+	unsigned most = 0;
+	for (uint32_t line = 0, lines; line < lifting->lift->line_count; line += lines) {
+		const struct content *content = &lifting->contents[lifting->lines[line].content];
+		lines = lift_run(lifting, line);
+		for (size_t index = 0; index < content->region_count; index++) {
+			const struct lift_region *region = &content->regions[index];
+			struct grid grid;
+			if (region->class != CLASS_PICTURE)
+				continue;
+			if (!grid_start(&grid, lifting->lift, field->high, field->low, cell_of(lifting, line, region), region->cells, false))
+				return 0;
+			for (uint32_t next = 1; next < lines; next++)
+				if (!take_line(lifting, &grid, cell_of(lifting, line + next, region)))
+					return 0;
+			const unsigned terms = sequence_terms(&grid.rows) + sequence_terms(&grid.columns);
+			most = terms > most ? terms : most;
+		}
+	}
+	return most;
+}
+
+// The high bit of a field's lower part, where two parts tell by fewer terms each, and by no more together, what takes three or four as one:
+// 80*(row/9) and row%9 in place of 80*(row/9) + 2048*(row%9). The field's own high bit if there are none.
+static unsigned split_high(const struct lifting *lifting, unsigned high, unsigned low)
+{
+	const unsigned whole = most_terms(lifting, &(struct lift_field){NULL, high, low});
+	for (unsigned cut = high; whole > 2 && cut > low + 1; cut--) {
+		const unsigned below = most_terms(lifting, &(struct lift_field){NULL, cut - 1, low});
+		const unsigned above = below == 0 || below >= whole ? 0 : most_terms(lifting, &(struct lift_field){NULL, high, cut});
+		if (above > 0 && below + above <= whole)
+			return cut - 1;
+	}
+	return high;
+}
+
 // Finds runs of two state bits and more that the picture's lines and columns tell.
 static bool find_fields(struct lifting *lifting)
 {
@@ -177,7 +215,8 @@ static bool find_fields(struct lifting *lifting)
 	if (lift->fields == NULL)
 		return lift_memory(lifting);
 	for (unsigned low = 0; low + 1 < lifting->wiring.line.state_bits;) {
-		const int high = regular_high(lifting, low);
+		const int regular = regular_high(lifting, low);
+		const int high = regular > (int)low ? (int)split_high(lifting, (unsigned)regular, low) : regular;
 		if (high > (int)low) {
 			const char *name = arena_format(lift->arena, "bits_%d_%u", high, low);
 			if (name == NULL)

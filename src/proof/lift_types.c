@@ -1,8 +1,15 @@
-// Line types: contents with holds. Lines of one content whose holds are written alike are of one type.
+// Line types: contents with holds. Lines of one content whose holds are written alike are of one type, found by a hash.
 #include <string.h>
 
 #include "base/arena.h"
+#include "base/diagnostics.h"
+#include "plan/document.h"
 #include "proof/lift_work.h"
+
+// YAML nodes of a line type, of a region of it and of a block of the frame, with their keys; what they assert and hold comes on top.
+#define TYPE_NODES 6
+#define REGION_NODES 7
+#define BLOCK_NODES 5
 
 static uint64_t hash_word(uint64_t hash, uint64_t word)
 {
@@ -54,16 +61,6 @@ static const char *numbered(struct arena *arena, const char *name, size_t number
 	return number == 1 ? name : arena_format(arena, "%s %zu", name, number);
 }
 
-// The type's number among those of the same name, over all contents.
-static size_t next_number(struct lifting *lifting, uint32_t content)
-{
-	struct content *contents = lifting->contents;
-	size_t first = 0;
-	while (strcmp(contents[first].name, contents[content].name) != 0)
-		first++;
-	return ++contents[first].types;
-}
-
 // Regions of one name in a line are numbered.
 static bool name_regions(struct lifting *lifting, struct lift_type *type)
 {
@@ -105,38 +102,142 @@ static bool grow(struct arena *arena, void **list, size_t count, size_t size)
 	return true;
 }
 
-static struct lift_type *add_type(struct lifting *lifting, uint32_t content, struct lift_region *regions, size_t count, uint64_t hash)
+static bool report_size(struct lifting *lifting, size_t types, size_t regions, size_t blocks)
+{
+	diagnose(lifting->diagnostics, RULE_LIFT_SIZE, lifting->place,
+	         "these images take %zu line types of %zu regions and %zu blocks of lines, or more: a plan has room for %d nodes of YAML",
+	         types, regions, blocks, DOCUMENT_LIMIT_NODES);
+	return false;
+}
+
+bool lift_check_size(struct lifting *lifting)
+{
+	size_t blocks = 1, regions = 0;
+	for (uint32_t line = 1; line < lifting->lift->line_count; line++)
+		blocks += lifting->lines[line].content != lifting->lines[line - 1].content;
+	for (size_t content = 0; content < lifting->content_count; content++)
+		regions += lifting->contents[content].region_count;
+	if (lifting->content_count * TYPE_NODES + regions * REGION_NODES + blocks * BLOCK_NODES <= DOCUMENT_LIMIT_NODES)
+		return true;
+	return report_size(lifting, lifting->content_count, regions, blocks);
+}
+
+static size_t nodes_of(const struct lift_region *regions, size_t count)
+{
+	size_t nodes = TYPE_NODES;
+	for (size_t index = 0; index < count; index++) {
+		nodes += REGION_NODES + 2 * regions[index].hold_count;
+		for (uint64_t signals = regions[index].asserted; signals != 0; signals &= signals - 1)
+			nodes++;
+	}
+	return nodes;
+}
+
+// A table twice as large as there are types, with those that are there.
+static bool spread_types(struct lifting *lifting)
+{
+	struct type_table *table = &lifting->types;
+	const struct lift *lift = lifting->lift;
+	if (table->slots != NULL && 2 * lift->type_count <= table->mask)
+		return true;
+	table->mask = table->slots == NULL ? 63 : 2 * table->mask + 1;
+	table->slots = arena_array(lifting->arena, (size_t)table->mask + 1, sizeof *table->slots);
+	for (uint32_t type = 0; table->slots != NULL && type < lift->type_count; type++) {
+		uint32_t slot = (uint32_t)(lift->types[type].hash & table->mask);
+		while (table->slots[slot] != 0)
+			slot = (slot + 1) & table->mask;
+		table->slots[slot] = type + 1;
+	}
+	return table->slots != NULL;
+}
+
+// The slot of a type that is written alike, or the free one where it belongs.
+static uint32_t *find_slot(const struct lifting *lifting, uint32_t content, const struct lift_region *regions, size_t count, uint64_t hash)
+{
+	const struct type_table *table = &lifting->types;
+	uint32_t slot = (uint32_t)(hash & table->mask);
+	for (; table->slots[slot] != 0; slot = (slot + 1) & table->mask) {
+		const struct lift_type *type = &lifting->lift->types[table->slots[slot] - 1];
+		if (type->hash == hash && type->content == content && same_regions(type, regions, count))
+			break;
+	}
+	return &table->slots[slot];
+}
+
+static bool add_type(struct lifting *lifting, uint32_t content, struct lift_region *regions, size_t count, uint64_t hash)
 {
 	struct lift *lift = lifting->lift;
 	void *types = lift->types;
 	if (!grow(lift->arena, &types, lift->type_count, sizeof *lift->types))
-		return NULL;
+		return false;
 	lift->types = types;
 	struct lift_type *type = &lift->types[lift->type_count];
 	*type = (struct lift_type){.cells = lifting->contents[content].cells, .ticks = lifting->contents[content].ticks, .content = content,
 	                           .hash = hash, .regions = regions, .region_count = count};
-	type->name = numbered(lift->arena, lifting->contents[content].name, next_number(lifting, content));
-	if (type->name == NULL || !name_regions(lifting, type))
-		return NULL;
+	lifting->node_count += nodes_of(regions, count);
+	lifting->region_count += count;
 	lift->type_count++;
-	return type;
+	return true;
 }
 
 bool lift_add_block(struct lifting *lifting, uint32_t content, uint32_t lines, struct lift_region *regions, size_t count)
 {
 	struct lift *lift = lifting->lift;
 	const uint64_t hash = hash_type(content, regions, count);
-	struct lift_type *type = NULL;
-	for (size_t index = 0; index < lift->type_count && type == NULL; index++)
-		if (lift->types[index].hash == hash && lift->types[index].content == content && same_regions(&lift->types[index], regions, count))
-			type = &lift->types[index];
-	if (type == NULL)
-		type = add_type(lifting, content, regions, count, hash);
 	void *blocks = lift->blocks;
-	if (type == NULL || !grow(lift->arena, &blocks, lift->block_count, sizeof *lift->blocks))
+	if (!spread_types(lifting))
 		return lift_memory(lifting);
+	uint32_t *slot = find_slot(lifting, content, regions, count, hash);
+	if ((*slot == 0 && !add_type(lifting, content, regions, count, hash)) ||
+	    !grow(lift->arena, &blocks, lift->block_count, sizeof *lift->blocks))
+		return lift_memory(lifting);
+	if (*slot == 0)
+		*slot = (uint32_t)lift->type_count;
 	lift->blocks = blocks;
-	lift->blocks[lift->block_count++] = (struct lift_block){lines, (uint32_t)(type - lift->types)};
-	type->lines += lines;
+	lift->blocks[lift->block_count++] = (struct lift_block){lines, *slot - 1};
+	lift->types[*slot - 1].lines += lines;
+	lifting->node_count += BLOCK_NODES;
+	if (lifting->node_count <= DOCUMENT_LIMIT_NODES)
+		return true;
+	report_size(lifting, lift->type_count, lifting->region_count, lift->block_count);
+	if (lift->options.near)
+		diagnose_hint(lifting->diagnostics, "without --near the plan is shorter");
+	return false;
+}
+
+static const char *name_of(const struct lifting *lifting, const struct lift_type *type)
+{
+	return lifting->contents[type->content].name;
+}
+
+// The type of a name that most lines are of is called just that, the others are numbered from 2 on.
+static bool number_types(struct lifting *lifting, const char *name)
+{
+	struct lift *lift = lifting->lift;
+	const struct lift_type *commonest = NULL;
+	size_t number = 1;
+	for (size_t type = 0; type < lift->type_count; type++)
+		if (strcmp(name_of(lifting, &lift->types[type]), name) == 0 && (commonest == NULL || lift->types[type].lines > commonest->lines))
+			commonest = &lift->types[type];
+	for (size_t index = 0; index < lift->type_count; index++) {
+		struct lift_type *type = &lift->types[index];
+		if (strcmp(name_of(lifting, type), name) != 0)
+			continue;
+		type->name = numbered(lift->arena, name, type == commonest ? 1 : ++number);
+		if (type->name == NULL)
+			return lift_memory(lifting);
+	}
+	return true;
+}
+
+bool lift_name_types(struct lifting *lifting)
+{
+	struct lift *lift = lifting->lift;
+	for (size_t type = 0; type < lift->type_count; type++) // each name at its first type
+		if (lift->types[type].name == NULL && !number_types(lifting, name_of(lifting, &lift->types[type])))
+			return false;
+	for (size_t type = 0; type < lift->type_count; type++)
+		if (!name_regions(lifting, &lift->types[type]))
+			return false;
 	return true;
 }

@@ -23,13 +23,19 @@ struct content {
 	struct lift_region *regions;   // as its signals tell them apart, names yet to come
 	size_t region_count;
 	const char *name;              // of its line types, without number
-	size_t types;                  // so far
+};
+
+// An open hash table of the lift's line types, numbered from 1.
+struct type_table {
+	uint32_t *slots;
+	uint32_t mask;
 };
 
 struct lifting {
 	struct lift *lift;
 	struct arena *arena;           // of this work; results go to the lift's
 	const struct plan *plan;
+	const struct image *images;
 	const struct machine *machine;
 	struct wiring wiring;
 	struct feedback at;
@@ -44,7 +50,10 @@ struct lifting {
 	size_t content_count;
 	uint32_t normal_cells;         // the length of the commonest line, by time
 	int64_t normal_ticks;
-	size_t type_capacity;
+	uint32_t length_count;         // of lines in cells
+	struct type_table types;
+	size_t region_count;           // of all types so far
+	size_t node_count;             // of YAML, that types and blocks so far take at least
 };
 
 // Each returns false after reporting.
@@ -53,16 +62,23 @@ struct lifting {
 bool lift_walk(struct lifting *lifting);
 // Cuts the loop into lines, and turns it so that the frame's first cell is cell 0.
 bool lift_cut(struct lifting *lifting);
+// Whether the lines are a raster's; and says that there are none (returns false).
+bool lift_check_raster(struct lifting *lifting);
+bool lift_report_no_lines(struct lifting *lifting);
 // Looks for other loops.
 bool lift_find_loops(struct lifting *lifting);
 // Sorts lines by what they show, into contents; and divides these into regions.
 bool lift_place(struct lifting *lifting);
 bool lift_divide(struct lifting *lifting);
+// Whether a plan can hold so many contents with their regions, and runs of them.
+bool lift_check_size(struct lifting *lifting);
 // Names regions and contents.
 bool lift_name(struct lifting *lifting);
 // Makes blocks and line types, with holds where picture is shown (near: without any), or that pin every state.
 bool lift_hold(struct lifting *lifting);
 bool lift_pin(struct lifting *lifting);
+// Names line types and their regions.
+bool lift_name_types(struct lifting *lifting);
 
 // Whether the line stage of a line-frame machine numbers the cells of every line from 0. Cannot fail.
 bool lift_numbers_cells(const struct lifting *lifting);
@@ -70,11 +86,14 @@ bool lift_numbers_cells(const struct lifting *lifting);
 // "memory is out"; returns false.
 bool lift_memory(struct lifting *lifting);
 
-// The ticks of a cell that shows these signals. Cannot fail.
+// The ticks of a cell that shows these signals, and of a line. Cannot fail.
 int64_t lifted_cell_ticks(const struct lifting *lifting, uint64_t asserted);
+int64_t lifted_line_ticks(const struct lifting *lifting, const struct lifted_line *line);
+// Whether more than half of a line is sync. There is a signal to cut at. Cannot fail.
+bool lifted_mostly_sync(const struct lifting *lifting, const struct lifted_line *line);
 
 // Appends a block of so many lines of a content, whose regions (in the lift's arena, with holds and without names) make a line type;
-// one that is there already is taken again. False when memory is out.
+// one that is there already is taken again. False after reporting that memory is out, or that they are more than a plan holds.
 bool lift_add_block(struct lifting *lifting, uint32_t content, uint32_t lines, struct lift_region *regions, size_t count);
 
 // The lines from `first` on that show the same as it, up to the loop's end. Cannot fail.

@@ -21,6 +21,9 @@ struct lift_sources {
 // without comments. On top, a comment names the board and each chip's file and CRC-32. Failure is text's.
 void view_lift_plan(struct text *out, const struct lift *lift, const struct node *root, const struct lift_sources *sources);
 
+// Why the frame does not begin after vertical sync, as "arbitrary, as there is no vertical sync"; NULL if it does.
+const char *view_lift_first(const struct lift *lift);
+
 // Puts what was found in words: the loop, the frame, the line types. Failure is text's.
 void view_lift_text(struct text *out, const struct lift *lift);
 

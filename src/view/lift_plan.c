@@ -16,20 +16,21 @@ static void put_sources(struct text *out, const struct lift *lift, const struct 
 		text_printf(out, "# Bank %u of the jumpers.\n", (unsigned)lift->options.bank);
 }
 
-// Where the images have the state that the board names as start.
+// Where the images have the state that the board names as start, which the plan has another one for.
 static void put_board_start(struct text *out, const struct lift *lift)
 {
 	const struct machine_plan *machine = &lift->plan->machine;
 	uint32_t cell = 0;
 	while (cell < lift->cell_count && lift->states[cell] != machine->start)
 		cell++;
-	text_put(out, "# The board's start is ");
+	text_put(out, "# The board starts in state ");
 	text_put_hex(out, machine->start, machine->line.state_bits);
+	text_put(out, ", ");
 	if (cell < lift->cell_count)
-		text_printf(out, ", the images' state %u cells after the first of this frame. Below it is", (unsigned)cell);
+		text_put_count(out, cell, "cell into this frame", "cells into this frame");
 	else
-		text_put(out, ", a state that the images do not keep to. Below it is");
-	text_put(out, " what they have in the first.\n");
+		text_put(out, "from which the images come to this frame");
+	text_put(out, "; start below is the state of the frame's first cell.\n");
 }
 
 static void put_remarks(struct text *out, const struct lift *lift)
@@ -42,9 +43,10 @@ static void put_remarks(struct text *out, const struct lift *lift)
 	if (lift->copies > 1)
 		text_printf(out, "# The frame is %u laps of the images' loop: after so many the subcarrier is where it was.\n",
 		            (unsigned)lift->copies);
-	if (lift->has_start && machine->has_start && lift->start != machine->start) {
+	if (view_lift_first(lift) != NULL)
+		text_printf(out, "# Start of the frame: %s.\n", view_lift_first(lift));
+	if (lift->has_start && machine->has_start && lift->start != machine->start)
 		put_board_start(out, lift);
-	}
 	if (lift->renumbered)
 		text_put(out, "# The images number the frame's lines otherwise than from 0 up, as every plan does.\n");
 	if (lift->uneven_starts)

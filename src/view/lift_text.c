@@ -4,6 +4,19 @@
 #include "view/figures.h"
 #include "view/lift.h"
 
+const char *view_lift_first(const struct lift *lift)
+{
+	static const char *const words[][2] = {
+		[FIRST_FREE] = {"arbitrary, as there is no vertical sync", "anywhere"},
+		[FIRST_COUNTED] = {"where the counter is 0; there is no vertical sync", "where the counter is 0, as in every plan, and not after vertical sync"},
+		[FIRST_NUMBERED] = {"line 0 of the frame stage; there is no vertical sync",
+		                    "line 0 of the frame stage, as in every plan, and not after vertical sync"},
+		[FIRST_HOME] = {"where spare rows lead; there is no vertical sync",
+		                "where spare rows lead, so that they keep their bytes, and not after vertical sync"},
+	};
+	return lift->first == FIRST_AFTER_SYNC ? NULL : words[lift->first][lift->vertical_sync];
+}
+
 static void put_loop(struct text *out, const struct lift *lift)
 {
 	struct fraction seconds;
@@ -11,7 +24,8 @@ static void put_loop(struct text *out, const struct lift *lift)
 	text_put_count(out, lift->line_count, "line", "lines");
 	text_put(out, ", ");
 	text_put_count(out, lift->cell_count, "cell", "cells");
-	text_printf(out, ", %lld ticks", (long long)lift->tick_count);
+	text_put(out, ", ");
+	text_put_count(out, (uint64_t)lift->tick_count, "tick", "ticks");
 	if (seconds_of_ticks(&lift->plan->clock, lift->tick_count, &seconds)) {
 		text_put(out, ", ");
 		text_put_time(out, seconds);
@@ -53,7 +67,9 @@ static void put_region(struct text *out, const struct lift *lift, const struct l
 static void put_type(struct text *out, const struct lift *lift, const struct lift_type *type)
 {
 	const size_t width = longest_name(type);
-	text_printf(out, "\nline \"%s\": %u cells, %lld ticks; ", type->name, (unsigned)type->cells, (long long)type->ticks);
+	text_printf(out, "\nline \"%s\": ", type->name);
+	text_put_count(out, type->cells, "cell, ", "cells, ");
+	text_put_count(out, (uint64_t)type->ticks, "tick; ", "ticks; ");
 	text_put_count(out, type->lines, "line of the loop\n", "lines of the loop\n");
 	text_printf(out, "%-*s   cell  cells  asserted\n", (int)width, "region");
 	for (size_t region = 0; region < type->region_count; region++)
@@ -71,6 +87,8 @@ void view_lift_text(struct text *out, const struct lift *lift)
 	if (lift->copies > 1)
 		text_printf(out, "; %u laps of that", (unsigned)lift->copies);
 	text_put(out, "\n");
+	if (view_lift_first(lift) != NULL)
+		text_printf(out, "start of the frame: %s\n", view_lift_first(lift));
 	for (size_t type = 0; type < lift->type_count; type++)
 		put_type(out, lift, &lift->types[type]);
 }

@@ -60,6 +60,23 @@ for chip in rom0 rom1 rom2; do
 	holds "pinned: the bytes of $chip" cmp "$work/images/tide-board-60.$chip.bin" "$work/pinned/tide-board-60.$chip.bin"
 done
 
+# ---- where the frame begins
+
+same 'after vertical sync: nothing is said of it' '' "$(grep -i '^# start of' "$work/plain.yaml")"
+same 'start: whose' '# The board starts in state 0x8000, 26460 cells into this frame; start below is the state of the frame'\''s first cell.' \
+	"$(grep '^# The board starts' "$work/plain.yaml")"
+for begun in 'mooring-board-counted line 0 of the frame stage' 'pier-clock where the counter is 0'; do
+	name=${begun%% *} where="${begun#* }, as in every plan, and not after vertical sync"
+	"$SCANLATCH" build "plans/$name.yaml" -o "$work/$name" --format bin >"$work/built" || fail "images of $name"
+	ends "$name" 0 "plans/$name.yaml" "$work/$name" -o "$work/$name.yaml"
+	holds "$name: its start, told" grep -qx "start of the frame: $where" "$work/out"
+	holds "$name: its start, in the plan" grep -qx "# Start of the frame: $where\." "$work/$name.yaml"
+done
+sed 's/line: vertical sync/line: border/' "$work/plain.yaml" >"$work/flat.yaml"
+"$SCANLATCH" build "$work/flat.yaml" -o "$work/flat" --format bin >"$work/built" 2>&1 || fail 'a frame without vertical sync is built'
+ends 'no vertical sync' 0 --text "$work/flat.yaml" "$work/flat"
+holds 'no vertical sync: said' grep -qx 'start of the frame: arbitrary, as there is no vertical sync' "$work/out"
+
 # ---- JSON and words
 
 ends 'JSON' 0 --json "$plan" "$work/images" -o "$work/beside.yaml"
@@ -94,6 +111,11 @@ holds 'a chip that has no name: what is wanted' grep -q 'wanted a name as NAME.L
 sed '/^lines:/,/^machine:/{/^machine:/!d}' "$plan" >"$work/board.yaml"
 ends 'a board' 0 "$work/board.yaml" "$work/images"
 same 'a board: the same but for its name' '' "$(diff <(sed s/tide-board-60.yaml/board.yaml/ "$work/plain.yaml") "$work/out")"
+sed '/fields:/d' "$work/board.yaml" >"$work/no-fields.yaml"
+ends 'a board without fields' 0 "$work/no-fields.yaml" "$work/images" -o "$work/found.yaml"
+holds 'a board without fields: they are found' grep -q 'fields: { bits_10_0: 10..0, bits_15_11: 15..11 }' "$work/found.yaml"
+holds 'a board without fields: each is told' grep -q 'hold: { bits_10_0: 80\*(row/9) + col, bits_15_11: row%9 }' "$work/found.yaml"
+holds 'a board without fields: the images keep to it' "$SCANLATCH" prove "$work/found.yaml" "$work/images"
 "$SCANLATCH" check "$work/board.yaml" >"$work/out" 2>"$work/err"
 same 'check of a board' 2 $?
 holds 'check of a board says what is missing' grep -q 'error: a plan needs the key "lines"' "$work/err"
@@ -151,6 +173,15 @@ holds 'laps: the same bytes' cmp "$work/laps/laps.rom0.bin" "$work/lapped/laps.r
 
 ends 'no images' 2 "$plan"
 ends 'no arguments' 2
+"$SCANLATCH" lift - rom0=- rom1="$work/images/tide-board-60.rom1.bin" rom2="$work/images/tide-board-60.rom2.bin" \
+	<"$work/board.yaml" >"$work/out" 2>"$work/err"
+same 'standard input twice: status' 2 $?
+holds 'standard input twice: said' grep -q 'only one of the board and its images can be standard input' "$work/err"
+ends 'two images of standard input' 2 "$plan" rom0=- rom1=- rom2="$work/images/tide-board-60.rom2.bin"
+holds 'two images of standard input: said' grep -q 'can be standard input' "$work/err"
+"$SCANLATCH" lift "$plan" rom0=- rom1="$work/images/tide-board-60.rom1.bin" rom2="$work/images/tide-board-60.rom2.bin" \
+	<"$work/images/tide-board-60.rom0.bin" >"$work/out" 2>"$work/err"
+same 'an image from standard input' 0 $?
 ends 'a bank that is no number' 2 --bank one "$plan" "$work/images"
 ends 'words and a file' 2 --text -o "$work/x.yaml" "$plan" "$work/images"
 head -c 1000 "$work/images/tide-board-60.rom1.bin" >"$work/short.bin"

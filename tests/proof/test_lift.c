@@ -165,6 +165,7 @@ static void turned_loops(void **test)
 		assert_string_equal(lift->types[lift->blocks[0].type].name, "border");
 		assert_string_equal(lift->types[lift->blocks[lift->block_count - 1].type].name, "vertical sync");
 		assert_int_equal(lift->line_count, 4);
+		assert_int_equal(lift->first, FIRST_AFTER_SYNC);
 		assert_int_equal(lift->lead_in_cells, 0);
 		assert_true(lift->has_start);
 		assert_int_equal(lift->start, lift->states[0]);
@@ -172,6 +173,15 @@ static void turned_loops(void **test)
 		diagnostics_destroy(diagnostics);
 		by_hand_destroy(hand);
 	}
+}
+
+// Of line types of one name, the commonest has it as it is, wherever it comes first; the others are numbered.
+static void names_by_use(void **test)
+{
+	(void)test;
+	assert_loop(6, "S--u- S---- S---- S-u-- S---- SSSS-",
+	            "border 2: sync*1 breezeway*2 burst*1 blank*1; border: sync*1 blank*4; border 3: sync*1 breezeway*1 burst*1 blank*2; "
+	            "vertical sync: broad sync*4 serration*1; | 1 border 2 2 border 1 border 3 1 border 1 vertical sync");
 }
 
 static void interlaced_pulses(void **test)
@@ -317,6 +327,62 @@ static void no_rasters(void **test)
 	by_hand_destroy(hand);
 }
 
+// Lengths of which the commonest, 4 cells, takes a third of the time; all are multiples of its half, as short lines often are by chance.
+static void multiples_of_short_halves(void **test)
+{
+	(void)test;
+	struct by_hand *hand = board(6);
+	burn_loop(hand, "S--- S----- S--- S--------- S--- S-------", 0);
+	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
+	by_hand_destroy(hand);
+}
+
+// Short lines are a raster that power-up leads to soon, in which sync is off for most of the time, and that takes its share of states.
+static void short_lines(void **test)
+{
+	(void)test;
+	assert_loop(5, "S-..- S-..- SSS--", "picture: sync*1 back porch*1 picture*2{bits_4_0=2 + 5*row + col} front porch*1; "
+	            "vertical sync: broad sync*3 serration*2; | 2 picture 1 vertical sync");
+	struct by_hand *hand = board(5);
+	burn_loop(hand, "SSS-- SSS-- S-..-", 0);
+	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
+	by_hand_destroy(hand);
+	hand = board(5);
+	burn_loop(hand, "S-..- S-..- SSS--", 0);
+	for (uint32_t state = 15; state < 26; state++) // eleven states on the way
+		burn(hand, state + 1, state == 15 ? 0 : state, 0);
+	hand->plan.machine.has_start = true;
+	hand->plan.machine.start = 25;
+	assert_lifted(hand, plain, "picture: sync*1 back porch*1 picture*2{bits_4_0=2 + 5*row + col} front porch*1; "
+	              "vertical sync: broad sync*3 serration*2; | 2 picture 1 vertical sync");
+	hand->plan.machine.start = 26;
+	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
+	by_hand_destroy(hand);
+	hand = board(14);
+	burn_loop(hand, "S-..- S-..- SSS--", 0);
+	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
+	by_hand_destroy(hand);
+}
+
+// Lines of few lengths are a raster, though none of them takes half of the time.
+static void few_lengths(void **test)
+{
+	(void)test;
+	static const char loop[] = "S------- S-------- S--------- S------- S-------- S--------- S------- S-------- S--------- "
+		"S------- S-------- S---------";
+	struct by_hand *hand = board(7);
+	burn_loop(hand, loop, 0);
+	struct diagnostics *diagnostics = diagnostics_create();
+	struct lift *lift = lift_images(&hand->plan, hand->images, plain, diagnostics);
+	assert_non_null(lift);
+	assert_int_equal(lift->type_count, 3);
+	assert_int_equal(lift->first, FIRST_FREE);
+	assert_false(lift->vertical_sync);
+	lift_destroy(lift);
+	diagnostics_destroy(diagnostics);
+	by_hand_destroy(hand);
+}
+
 static void other_loops(void **test)
 {
 	(void)test;
@@ -368,6 +434,7 @@ int main(void)
 	const struct CMUnitTest tests[] = {
 		cmocka_unit_test(regions_by_roles),
 		cmocka_unit_test(turned_loops),
+		cmocka_unit_test(names_by_use),
 		cmocka_unit_test(interlaced_pulses),
 		cmocka_unit_test(vertical_sync_without_serration),
 		cmocka_unit_test(vertical_sync_begun_elsewhere),
@@ -376,6 +443,9 @@ int main(void)
 		cmocka_unit_test(pinned_states),
 		cmocka_unit_test(decoded_signals),
 		cmocka_unit_test(no_rasters),
+		cmocka_unit_test(multiples_of_short_halves),
+		cmocka_unit_test(short_lines),
+		cmocka_unit_test(few_lengths),
 		cmocka_unit_test(other_loops),
 		cmocka_unit_test(laps_for_the_phase),
 	};

@@ -15,7 +15,7 @@ from generate import Generator
 from generate_line_frame import LineFrame
 from generate_text import written
 from generate_tight import Tight
-from oracle_plan import Refused
+from oracle_plan import Plan, Refused
 
 
 def list_codes(chance, tree):
@@ -64,6 +64,14 @@ class ListedStages(LineFrame):
 		list_codes(self.chance, self.tree)
 
 
+def make_raster(tree, text):
+	"""Sync that never comes, or never goes, is none: lifting would refuse it."""
+	plan = Plan(text)
+	for name, signal in tree["signals"].items():
+		if signal["role"].endswith(" sync") and len(set(plan.asserted[name])) == 1:
+			signal["role"] = "plain"
+
+
 def loop_tree(chance, name, _):
 	return Raster(chance, name).plan()
 
@@ -90,6 +98,8 @@ def write_plan(folder, seed):
 			tree = make(chance, name, random.Random(name))
 		except Refused:
 			continue
+		if kind == "lines":
+			make_raster(tree, written(random.Random(name), tree))
 		with open(os.path.join(folder, f"{name}.yaml"), "w", encoding="utf-8") as file:
 			file.write(written(chance, tree))
 		return
