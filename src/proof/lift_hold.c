@@ -181,7 +181,7 @@ static unsigned most_terms(const struct lifting *lifting, const struct lift_fiel
 			struct grid grid;
 			if (region->class != CLASS_PICTURE)
 				continue;
-			if (!grid_start(&grid, lifting->lift, field->high, field->low, cell_of(lifting, line, region), region->cells, false))
+			if (!grid_start(&grid, lifting->lift->states, field->high, field->low, cell_of(lifting, line, region), region->cells, false))
 				return 0;
 			for (uint32_t next = 1; next < lines; next++)
 				if (!take_line(lifting, &grid, cell_of(lifting, line + next, region)))
