@@ -5,6 +5,7 @@
 #include "proof/lift_work.h"
 
 #define MOST_LAPS 32 // of a frame: what takes longer to come round was not meant to
+#define MOST_PINNED_CELLS 4096 // of all line types, each of which may take a region
 
 bool lift_memory(struct lifting *lifting)
 {
@@ -147,13 +148,56 @@ static bool order_kinds(struct lifting *lifting)
 	return true;
 }
 
+static bool has_holds(const struct lift *lift)
+{
+	for (size_t type = 0; type < lift->type_count; type++)
+		for (size_t region = 0; region < lift->types[type].region_count; region++)
+			if (lift->types[type].regions[region].hold_count > 0)
+				return true;
+	return false;
+}
+
+// Whether states must be pinned for the images to keep to the plan: without holds and decoded signals, the line stage of a plan numbers the
+// cells, and the images' does not. Where the plan may have no room for that, they stay as they are.
+static bool wants_pins(const struct lifting *lifting)
+{
+	const struct lift *lift = lifting->lift;
+	uint64_t cells = 0;
+	for (size_t content = 0; content < lifting->content_count; content++)
+		cells += lifting->contents[content].cells;
+	for (size_t signal = 0; signal < lifting->plan->signal_count; signal++)
+		if (!signal_is_data(&lifting->plan->signals[signal]))
+			return false;
+	return lifting->wiring.form == FORM_LINE_FRAME && lifting->wiring.line.advance == ADVANCE_TABLE && !has_holds(lift) &&
+	       lifting->plan->machine.field_count < LIMIT_FIELDS && cells <= MOST_PINNED_CELLS && lift_starts_evenly(lifting) &&
+	       !lift_numbers_cells(lifting);
+}
+
+static bool hold_states(struct lifting *lifting)
+{
+	struct lift *lift = lifting->lift;
+	if (lift->options.near)
+		return lift_pin(lifting);
+	if (!lift_hold(lifting))
+		return false;
+	lift->pinned = wants_pins(lifting);
+	if (!lift->pinned)
+		return true;
+	lift->types = NULL;
+	lift->blocks = NULL;
+	lift->type_count = lift->block_count = lift->field_count = 0;
+	lifting->types = (struct type_table){0};
+	lifting->node_count = lifting->region_count = 0;
+	return lift_pin(lifting);
+}
+
 static bool run(struct lifting *lifting, const struct image *images)
 {
 	struct lift *lift = lifting->lift;
 	if (!begin(lifting, images) || !lift_walk(lifting) || !lift_cut(lifting) || !lift_find_loops(lifting) || !lift_place(lifting) ||
 	    !lift_divide(lifting) || !lift_check_size(lifting) || !lift_name(lifting))
 		return false;
-	if (!(lift->options.near ? lift_pin(lifting) : lift_hold(lifting)) || !lift_name_types(lifting))
+	if (!hold_states(lifting) || !lift_name_types(lifting))
 		return false;
 	find_start(lifting);
 	lift->copies = laps_in_phase(lifting);

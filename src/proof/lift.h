@@ -90,6 +90,7 @@ struct lift {
 	uint32_t start;
 	bool renumbered;               // the images number their lines otherwise than a plan's frame stage does
 	bool uneven_starts;            // line stage: lines do not all begin in one state
+	bool pinned;                   // line stage: states are pinned without being asked for, as a plan without holds would number cells
 	struct lift_type *types;
 	size_t type_count;
 	struct lift_block *blocks;     // of one lap

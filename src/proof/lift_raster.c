@@ -158,8 +158,7 @@ static bool is_mostly_sync(const struct lifting *lifting)
 	return cells > 0 && is_enough(cells - 1, lifting->lift->cell_count);
 }
 
-// Whether all lines of a line-frame machine begin in one state of the line stage.
-static bool starts_evenly(const struct lifting *lifting)
+bool lift_starts_evenly(const struct lifting *lifting)
 {
 	const uint32_t *states = lifting->lift->states, mask = low_bits(lifting->wiring.line.state_bits);
 	for (uint32_t line = 1; line < lifting->lift->line_count; line++)
@@ -177,7 +176,7 @@ static bool is_made(const struct lifting *lifting)
 		return true;
 	if (lifting->normal_cells == 1 || lift->lead_in_cells > SHORT_LEAD_IN_LINES * lifting->normal_cells || is_mostly_sync(lifting))
 		return false;
-	return lifting->ends != NULL ? starts_evenly(lifting) : (uint64_t)lift->cell_count * SHORT_STATES >= (uint64_t)1 << lifting->at.bits;
+	return lifting->ends != NULL ? lift_starts_evenly(lifting) : (uint64_t)lift->cell_count * SHORT_STATES >= (uint64_t)1 << lifting->at.bits;
 }
 
 static bool check_short_lines(struct lifting *lifting)

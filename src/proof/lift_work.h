@@ -80,7 +80,9 @@ bool lift_pin(struct lifting *lifting);
 // Names line types and their regions.
 bool lift_name_types(struct lifting *lifting);
 
-// Whether the line stage of a line-frame machine numbers the cells of every line from 0. Cannot fail.
+// Whether the line stage of a line-frame machine begins every line in one state. Cannot fail.
+bool lift_starts_evenly(const struct lifting *lifting);
+// Whether it numbers the cells of every line from 0. Cannot fail.
 bool lift_numbers_cells(const struct lifting *lifting);
 
 // "memory is out"; returns false.

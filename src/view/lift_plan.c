@@ -40,6 +40,8 @@ static void put_remarks(struct text *out, const struct lift *lift)
 	if (lift->options.near && machine->line.advance == ADVANCE_TABLE)
 		text_put(out, " Holds pin the state of every cell, so that a\n# build gives back the same rows.");
 	text_put(out, "\n");
+	if (lift->pinned)
+		text_put(out, "# Holds pin the state of every cell: without any, the line stage of a plan numbers the cells, and the images' does not.\n");
 	if (lift->copies > 1)
 		text_printf(out, "# The frame is %u laps of the images' loop: after so many the subcarrier is where it was.\n",
 		            (unsigned)lift->copies);

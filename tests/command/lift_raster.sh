@@ -149,4 +149,28 @@ same 'kinds that are short: status' 2 $?
 holds 'kinds that are short: said' grep -q 'no plan gives images like these: kind: 3 line types need 2 bits, found "1 bit" \[lift-size\]' "$work/err"
 holds 'kinds that are short: why' grep -q 'lines that differ in signals of the frame stage alone have kinds of their own' "$work/err"
 
+# ---- a line stage that does not number its cells, and that no expression tells
+
+/usr/bin/python3 - "$work" <<'MAKER'
+import random
+import sys
+order = random.Random(8).sample(range(1, 64), 19)
+order.insert(0, 0)
+line = [0x40] * (1 << 7)
+for cell, state in enumerate(order):
+	last = cell == 19
+	for kind in (0, 64):
+		line[state + kind] = order[(cell + 1) % 20] | last << 6 | (not 14 <= cell < 17) << 7
+open(f"{sys.argv[1]}/line.bin", "wb").write(bytes(line))
+open(f"{sys.argv[1]}/frame.bin", "wb").write(bytes((line + 1) % 16 | (line < 4) << 4 | (line >= 4) << 5 for line in range(1 << 4)))
+MAKER
+mkdir "$work/disordered"
+cp "$work/line.bin" "$work/disordered/made.rom0.bin"
+cp "$work/frame.bin" "$work/disordered/made.rom1.bin"
+"$SCANLATCH" lift "$work/kinds.yaml" "$work/disordered" >"$work/lifted.yaml" 2>"$work/err"
+same 'cells in no order: status' '0 ' "$? $(cat "$work/err")"
+holds 'cells in no order: why states are pinned' grep -q '^# Holds pin the state of every cell: without any, the line stage' "$work/lifted.yaml"
+"$SCANLATCH" prove "$work/lifted.yaml" "$work/disordered" >"$work/out" 2>"$work/err"
+same 'cells in no order: the images keep to the plan' '' "$(grep '^FAIL' "$work/out"; cat "$work/err")"
+
 finish
