@@ -103,7 +103,7 @@ mutated() {
 	same "reader and schema agree on mutated $1" '' "$(head -n 20 "$work/disagreements")"
 	for outcome in 'refused form' 'accepted read' 'accepted other'; do
 		found=$(sed -n "s/ $outcome\$//p" "$work/tally")
-		holds "mutated $1 come out each way: ${found:-0} $outcome" test "${found:-0}" -gt $(($2 / 50))
+		holds "mutated $1 come out each way: ${found:-0} $outcome" test "${found:-0}" -gt $(($2 / 100))
 	done
 }
 mutated plans "${SCHEMA_PLANS:-2500}"
