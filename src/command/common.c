@@ -84,14 +84,32 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 	return PARSED;
 }
 
+// Where there is no memory to tell characters apart, or for a long line: ASCII, cut off.
+__attribute__((format(printf, 3, 0)))
+static void put_plain_line(FILE *out, const char *before, const char *format, va_list arguments)
+{
+	char line[1024];
+	vsnprintf(line, sizeof line, format, arguments);
+	for (char *byte = line; *byte != '\0'; byte++)
+		if (*byte < ' ' || *byte > '~')
+			*byte = '?';
+	fprintf(out, "%s%s\n", before, line);
+}
+
+__attribute__((format(printf, 3, 0)))
 static void put_line(FILE *out, const char *before, const char *format, va_list arguments)
 {
 	struct text line = {0}, printable = {0};
+	va_list again;
+	va_copy(again, arguments);
 	text_put(&line, before);
 	text_vprintf(&line, format, arguments);
 	excerpt_put_printable(text_string(&line), line.length, &printable);
 	if (!line.failed && !printable.failed)
 		fprintf(out, "%s\n", text_string(&printable));
+	else
+		put_plain_line(out, before, format, again);
+	va_end(again);
 	text_release(&line);
 	text_release(&printable);
 }
