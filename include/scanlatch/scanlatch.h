@@ -57,8 +57,8 @@ scanlatch_plan *scanlatch_plan_read_file_as(const char *path, const char *name, 
 void scanlatch_plan_destroy(scanlatch_plan *plan);
 
 /* The files that scanlatch_plan_read_file_as would read a set's plans from, each once, each ended by NUL, and a NUL after the last; none if there are
- * mistakes in the set. NULL if the file holds no set or cannot be read, or memory is out. */
-char *scanlatch_set_plans(const char *path, const char *name);
+ * mistakes in the set. *plans is NULL if the file holds no set or cannot be read. False when memory is out, then *plans is as it was. */
+bool scanlatch_set_plans(const char *path, const char *name, char **plans);
 
 /* The plan's name, as file names use it. Owned by the plan. Cannot fail. */
 const char *scanlatch_plan_name(const scanlatch_plan *plan);

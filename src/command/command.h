@@ -77,8 +77,8 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 // Prints the version to standard output. Returns EXIT_GOOD.
 int print_version(void);
 
-// Prints a line that names what is not ours, such as paths: what could command a terminal, newlines too, is printed as '?'. Nothing if
-// memory is out.
+// Prints a line that names what is not ours, such as paths: what could command a terminal, newlines too, is printed as '?'; if memory is
+// out, all that is not ASCII, and at most 1023 bytes.
 __attribute__((format(printf, 2, 3)))
 void print_line(FILE *out, const char *format, ...);
 

@@ -84,13 +84,11 @@ int parse_options(const struct option_table *table, int argument_count, char **a
 	return PARSED;
 }
 
-#define MOST_WITHOUT_MEMORY 1024
-
-// A line is not to be lost where memory is out: what fits is printed, and of it nothing but ASCII.
+// Where there is no memory to tell characters apart, or for a long line: ASCII, cut off.
 __attribute__((format(printf, 3, 0)))
-static void put_line_without_memory(FILE *out, const char *before, const char *format, va_list arguments)
+static void put_plain_line(FILE *out, const char *before, const char *format, va_list arguments)
 {
-	char line[MOST_WITHOUT_MEMORY];
+	char line[1024];
 	vsnprintf(line, sizeof line, format, arguments);
 	for (char *byte = line; *byte != '\0'; byte++)
 		if (*byte < ' ' || *byte > '~')
@@ -110,7 +108,7 @@ static void put_line(FILE *out, const char *before, const char *format, va_list 
 	if (!line.failed && !printable.failed)
 		fprintf(out, "%s\n", text_string(&printable));
 	else
-		put_line_without_memory(out, before, format, again);
+		put_plain_line(out, before, format, again);
 	va_end(again);
 	text_release(&line);
 	text_release(&printable);

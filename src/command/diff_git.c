@@ -36,15 +36,18 @@ static const char *folder_left_out(struct arena *arena, char **arguments, const 
 	return called_in != NULL ? called_in : "";
 }
 
-// Settles where a set's plans are: where git's name says, unless more of them are in the folder that it may have left out.
+// Settles where a set's plans are: where git's name says, unless more of them are in the folder that it may have left out. False when memory is out.
 static bool find_plans(struct arena *arena, struct git_file *file, const char *folder)
 {
 	file->source = file->name;
-	file->plans = scanlatch_set_plans(file->path, file->name);
-	const char *longer = folder != NULL ? arena_format(arena, "%s%s", folder, file->name) : NULL;
-	if (longer == NULL || file->plans == NULL || folder[0] == '\0')
-		return longer != NULL;
-	char *plans = scanlatch_set_plans(file->path, longer);
+	if (!scanlatch_set_plans(file->path, file->name, &file->plans))
+		return false;
+	if (file->plans == NULL || folder[0] == '\0')
+		return true;
+	const char *longer = arena_format(arena, "%s%s", folder, file->name);
+	char *plans = NULL;
+	if (longer == NULL || !scanlatch_set_plans(file->path, longer, &plans))
+		return false;
 	if (count_plans(plans, true) > count_plans(file->plans, true)) {
 		char *const fewer = file->plans;
 		file->source = longer;
@@ -88,17 +91,20 @@ static void print_heading(char **arguments, const char *name)
 	fflush(stdout); // messages follow on standard error
 }
 
-// Says which plans a comparison of sets was made with: without that, what it says of bytes would not be true.
-static void print_plans(struct arena *arena, const struct git_file files[2])
+// Says which plans a comparison of sets was made with: without that, what it says of bytes would not be true. False when
+// memory is out.
+static bool print_plans(struct arena *arena, const struct git_file files[2])
 {
 	struct text plans = {0};
 	put_plans(arena, &plans, files, true);
+	const bool good = !plans.failed;
 	if (plans.length > 0) {
 		print_line(stdout, "both sides have the plans of the working tree: %s", text_string(&plans));
 		puts("what changed in these plans is not compared; chips may have to be burned again for it all the same");
+		fflush(stdout);
 	}
 	text_release(&plans);
-	fflush(stdout);
+	return good;
 }
 
 static void print_refusal(struct arena *arena, const struct git_file files[2])
@@ -118,10 +124,9 @@ static int diff_pair(struct arena *arena, struct git_file files[2], const struct
 	const char *old_source = arena_format(arena, "%s (old)", files[0].source);
 	const char *const paths[2] = {files[0].path, files[1].path}, *const names[2] = {files[0].name, files[1].name};
 	const char *const sources[2] = {old_source, files[1].source};
-	if (old_source == NULL)
+	const bool lacks = count_plans(files[0].plans, false) + count_plans(files[1].plans, false) > 0;
+	if (old_source == NULL || (!lacks && !print_plans(arena, files)))
 		return memory_error();
-	if (count_plans(files[0].plans, false) + count_plans(files[1].plans, false) == 0)
-		print_plans(arena, files);
 	const int code = diff_files(paths, names, sources, options, messages);
 	if (code == EXIT_BAD)
 		print_refusal(arena, files);

@@ -8,6 +8,7 @@
 #include "catalogue/catalogue.h"
 #include "library/library.h"
 #include "plan/characters.h"
+#include "plan/read.h"
 
 // True if a bank's plan is there to be read. What waits for somebody to write, or never ends, is no plan. A folder is told by the reader.
 static bool is_plan_there(const struct set_bank *bank, const char *path, struct diagnostics *diagnostics)
@@ -87,10 +88,8 @@ static bool is_named_before(const struct set *set, size_t bank)
 	return false;
 }
 
-static void put_plan_files(struct arena *arena, const struct source *source, struct text *out)
+static void put_plan_files(struct arena *arena, const struct set *set, struct text *out)
 {
-	struct diagnostics *unsaid = diagnostics_create();
-	struct set *set = unsaid != NULL ? set_read(source, unsaid) : NULL;
 	for (size_t bank = 0; set != NULL && bank < set->bank_count; bank++) {
 		const char *path = is_named_before(set, bank) ? "" : set_bank_path(arena, set, bank);
 		out->failed = out->failed || path == NULL;
@@ -98,27 +97,42 @@ static void put_plan_files(struct arena *arena, const struct source *source, str
 			text_put_bytes(out, path, strlen(path) + 1);
 	}
 	text_put_bytes(out, "", 1);
-	out->failed = out->failed || unsaid == NULL;
+}
+
+// Puts nothing if the source is no set's.
+static void put_files_of_set(struct arena *arena, const struct source *source, struct text *out)
+{
+	struct diagnostics *unsaid = diagnostics_create();
+	const struct node *root = unsaid != NULL ? document_parse(arena, source, unsaid) : NULL;
+	struct set *set = NULL;
+	if (root != NULL && node_is_set(root)) {
+		set = set_read(source, unsaid);
+		put_plan_files(arena, set, out);
+	}
+	out->failed = out->failed || unsaid == NULL || diagnostics_has_system_error(unsaid);
 	set_destroy(set);
 	diagnostics_destroy(unsaid);
 }
 
-char *scanlatch_set_plans(const char *path, const char *name)
+bool scanlatch_set_plans(const char *path, const char *name, char **plans)
 {
 	struct arena *arena = arena_create();
 	struct text files = {0};
 	struct source source = {name, NULL, 0};
 	char *bytes, *result = NULL;
-	if (arena != NULL && file_read(arena, path, SCANLATCH_PLAN_BYTES, &bytes, &source.length) == READ_OK) {
+	const enum read_status status = arena != NULL ? file_read(arena, path, SCANLATCH_PLAN_BYTES, &bytes, &source.length) : READ_MEMORY;
+	if (status == READ_OK) {
 		source.bytes = bytes;
-		if (source_is_set(&source))
-			put_plan_files(arena, &source, &files);
+		put_files_of_set(arena, &source, &files);
 	}
 	if (files.length > 0 && !files.failed && (result = malloc(files.length)) != NULL)
 		memcpy(result, files.bytes, files.length);
+	const bool good = status != READ_MEMORY && !files.failed && (files.length == 0 || result != NULL);
+	if (good)
+		*plans = result;
 	text_release(&files);
 	arena_destroy(arena);
-	return result;
+	return good;
 }
 
 void plan_set_destroy(struct plan_set *plans)

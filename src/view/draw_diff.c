@@ -25,11 +25,11 @@ struct diff_drawing {
 	size_t pairs, left_out; // line types that are drawn, and that differ too
 };
 
-static void draw_words(struct diff_drawing *drawing, const char *class, unsigned size, int64_t height, int64_t indent)
+static void draw_words(struct diff_drawing *drawing, const char *class, unsigned size, int64_t height)
 {
 	struct text printable = {0};
 	excerpt_put_printable(text_string(&drawing->words), drawing->words.length, &printable);
-	svg_fitted(drawing->svg, class, MARGIN + indent, drawing->y + height - PX(8), ANCHOR_START, PAGE_WIDTH - 2 * MARGIN - indent, size,
+	svg_fitted(drawing->svg, class, MARGIN, drawing->y + height - PX(8), ANCHOR_START, PAGE_WIDTH - 2 * MARGIN, size,
 	           text_string(&printable));
 	drawing->y += height;
 	svg_release(drawing->svg, &printable);
@@ -39,7 +39,7 @@ static void draw_words(struct diff_drawing *drawing, const char *class, unsigned
 
 static void draw_sentence(struct diff_drawing *drawing)
 {
-	draw_words(drawing, "sentence", 15, SENTENCE, 0);
+	draw_words(drawing, "sentence", 15, SENTENCE);
 }
 
 static void draw_fact(struct diff_drawing *drawing, const struct fact *fact)
@@ -172,7 +172,7 @@ static bool draw_pair(struct diff_drawing *drawing, const struct drawn_pair *pai
 	drawing->pairs++;
 	drawing->y += PX(14);
 	put_pair_heading(&drawing->words, pair);
-	draw_words(drawing, "name", SVG_NAME_SIZE, HEADING, 0);
+	draw_words(drawing, "name", SVG_NAME_SIZE, HEADING);
 	for (size_t index = 0; index < pair->comparison->count; index++)
 		if (change_is_of_line(&pair->comparison->changes[index], name))
 			draw_change(drawing, pair->comparison, &pair->comparison->changes[index], &count);
@@ -226,7 +226,7 @@ static bool draw_plan(struct diff_drawing *drawing, const struct plan_difference
 	if (plan->bank_count > 0) {
 		drawing->y += PX(10);
 		put_bank_numbers(&drawing->words, plan);
-		draw_words(drawing, "name", SVG_NAME_SIZE, HEADING, 0);
+		draw_words(drawing, "name", SVG_NAME_SIZE, HEADING);
 	}
 	if (plan->comparison == NULL) {
 		put_only(&drawing->words, plan);
@@ -243,19 +243,20 @@ static void draw_foot(struct diff_drawing *drawing)
 	drawing->y += PX(10);
 	if (drawing->left_out > 0) {
 		text_put_count(&drawing->words, drawing->left_out, "line type more differs, and is not drawn", "line types more differ, and are not drawn");
-		draw_words(drawing, "small", 13, SENTENCE, 0);
+		draw_words(drawing, "small", 13, SENTENCE);
 	}
 	text_put(&drawing->words, drawing->pairs > 0 ? "levels are those at the pins, to one scale of time; arrows go from where an edge was to where it is, rings are "
 	                                               "around edges that are new or gone"
 	                                             : "no line type that both frames have differs at the pins");
-	draw_words(drawing, "small", 13, SENTENCE, 0);
+	draw_words(drawing, "small", 13, SENTENCE);
 }
 
 static bool draw_body(struct diff_drawing *drawing, const struct difference *difference)
 {
 	bool drawn = true;
 	put_difference_headline(&drawing->words, difference);
-	draw_words(drawing, "title", SVG_TITLE_SIZE, PX(48), 0);
+	const bool fits = svg_words_width(text_string(&drawing->words), SVG_TITLE_SIZE) <= PAGE_WIDTH - 2 * MARGIN;
+	draw_words(drawing, fits ? "title" : "name", fits ? SVG_TITLE_SIZE : SVG_NAME_SIZE, PX(48));
 	draw_chips(drawing, difference);
 	draw_set(drawing, difference);
 	for (size_t index = 0; drawn && index < difference->plan_count; index++)
