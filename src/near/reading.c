@@ -16,7 +16,7 @@ static uint32_t count_asserted(const uint64_t *pins, uint32_t cells, unsigned si
 {
 	uint32_t count = 0;
 	for (uint32_t cell = 0; cell < cells; cell++)
-		count += pins[cell] >> signal & 1;
+		count += (pins[cell] >> signal & 1) != 0;
 	return count;
 }
 
