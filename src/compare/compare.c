@@ -96,12 +96,20 @@ static bool is_cut_alike(const struct comparing *comparing, uint32_t first)
 	return same;
 }
 
-// The same loop of cells, cut into other lines. Where only whole blocks stand in another order, it is not taken for the same: the frame begins
-// with another line.
+// The same loop of cells, begun at another cell or cut into other lines. Where only whole blocks stand in another order, it is not taken for the
+// same timeline: the frame begins with another line. Two stages have rows for their lines, so that others are another machine.
 static void find_loop(struct comparing *comparing)
 {
-	if (!comparing->failed && all_signals_stay(comparing) && !timelines_are_same(comparing))
-		comparing->same_loop = frames_are_rotated(comparing, &comparing->loop_cell) && !is_cut_alike(comparing, comparing->loop_cell);
+	const bool loops = comparing->old->machine.form == FORM_LOOP && comparing->now->machine.form == FORM_LOOP;
+	if (comparing->failed || !loops || !all_signals_stay(comparing) || timelines_are_same(comparing))
+		return;
+	comparing->rotated = frames_are_rotated(comparing, &comparing->loop_cell);
+	comparing->same_loop = comparing->rotated && !is_cut_alike(comparing, comparing->loop_cell);
+}
+
+bool pins_first_cell(const struct plan *plan)
+{
+	return plan->machine.has_start || plan->machine.line.advance == ADVANCE_COUNT;
 }
 
 // What lines and blocks are is only said in other words then, and these would be all of them.
@@ -164,11 +172,14 @@ static void summarize(struct comparing *comparing, struct comparison *comparison
 	                                  .old_chip_of = comparing->old_chip_of, .line_of = comparing->line_of,
 	                                  .signal_of = comparing->signal_of};
 	comparing->failed = comparing->failed || comparison->changes == NULL;
+	comparison->same_deeds = comparing->rotated && !pins_first_cell(comparing->old) && !pins_first_cell(comparing->now);
 	for (size_t index = 0; !comparing->failed && index < comparison->count; index++) {
 		const enum change_section section = comparison->changes[index].section;
 		comparison->edits += section != CHANGE_LIMITS;
 		comparison->same_meaning = comparison->same_meaning && section == CHANGE_WORDS;
+		comparison->same_deeds = comparison->same_deeds && (section == CHANGE_WORDS || section == CHANGE_FRAME);
 	}
+	comparison->same_deeds = comparison->same_deeds || comparison->same_meaning;
 }
 
 struct comparison *comparison_create(const struct timeline *old, const struct timeline *now)

@@ -55,6 +55,7 @@ struct comparison {
 	bool same_timeline;       // the same signals, holds and ticks in every cell of the loop, at the same clock; where it begins, and how it is cut into
 	                          // lines, is told in words
 	bool same_meaning;        // no change but those of CHANGE_WORDS
+	bool same_deeds;          // the same meaning, or a frame of no set start that only begins with another of its lines: images of either do for both
 	const size_t *old_chip_of; // [now's chips]: the old plan's chip that a chip was, or SIZE_MAX
 	const size_t *line_of;     // [old's line types]: the new plan's line type that an old one is, or SIZE_MAX
 	const size_t *signal_of;   // [old's signals]: the same of signals

@@ -26,7 +26,8 @@ struct comparing {
 	bool *old_used, *now_used; // [line types]: the frame has lines of them
 	bool same_clock;       // a tick and a cell last as long
 	bool same_holds;       // every cell holds what it held
-	bool same_loop;        // both frames are one loop that is cut into other lines;
+	bool rotated;          // both frames are one loop, begun at other cells or cut into other lines;
+	bool same_loop;        // and it is cut into other lines
 	uint32_t loop_cell;    // then: the old frame's cell at which the new one begins
 	size_t work_left;      // steps that alignments may still take
 	bool failed;
@@ -71,6 +72,9 @@ bool alignment_begin(struct comparing *comparing, struct alignment *alignment);
 
 // The ticks by which a cell is longer. Cannot fail.
 int64_t stretch_of(const struct plan *plan, uint64_t asserted);
+
+// Whether the state of the frame's first cell is set, and not whichever suits. Cannot fail.
+bool pins_first_cell(const struct plan *plan);
 
 // Whether both frames are one and the same loop: the same signals, holds and ticks in cells that follow each other alike. Sets *first to the
 // old frame's cell at which the new one begins. All signals must be the same. Linear time.

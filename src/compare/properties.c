@@ -248,18 +248,28 @@ static void compare_fields(struct comparing *comparing)
 			compare_field(comparing, NULL, &now->fields[index]);
 }
 
-// The same number of another width is the same state. A loop that begins with another cell begins in that one's state.
+// A loop that is begun at another cell: where the first cell's state is set, that is another cell's now.
+static void compare_first_cell(struct comparing *comparing)
+{
+	if (comparing->same_loop && comparing->loop_cell != 0 && (pins_first_cell(comparing->old) || pins_first_cell(comparing->now)))
+		add_change(comparing, (struct change){.section = CHANGE_MACHINE, .kind = "start-moved", .what = "start",
+		                                      .also = "it is the state of another cell now, where the frame begins"});
+}
+
+// The same number of another width is the same state.
 static void compare_start(struct comparing *comparing)
 {
 	const struct machine_plan *old = &comparing->old->machine, *now = &comparing->now->machine;
 	struct both both = no_texts();
-	if (old->has_start && now->has_start && old->start == now->start)
+	if (old->has_start == now->has_start && old->start == now->start) {
+		compare_first_cell(comparing);
 		return;
+	}
 	if (old->has_start)
 		text_put_hex(&both.old, old->start, old->line.state_bits);
 	if (now->has_start)
 		text_put_hex(&both.now, now->start, now->line.state_bits);
-	compare_both(comparing, comparing->same_loop ? CHANGE_WORDS : CHANGE_MACHINE, "start", &both);
+	compare_both(comparing, CHANGE_MACHINE, "start", &both);
 }
 
 void compare_machine(struct comparing *comparing)

@@ -62,7 +62,7 @@ void text_put_change_value(struct text *out, const struct comparison *comparison
 	else if (change->now != NULL)
 		text_printf(out, "new, %s", change->now);
 	if (change->also != NULL)
-		text_printf(out, "; %s", change->also);
+		text_printf(out, "%s%s", change->shifted || change->old != NULL || change->now != NULL ? "; " : "", change->also);
 }
 
 void text_put_change(struct text *out, const struct comparison *comparison, const struct change *change)

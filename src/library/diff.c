@@ -218,13 +218,24 @@ static bool is_gone(const struct difference *difference, const struct side *now,
 	return true;
 }
 
+// Whether images of either plan do what the other says.
+static bool does_same(const struct plan_difference *plan)
+{
+	if (plan->comparison == NULL || !plan->comparison->same_deeds)
+		return false;
+	return plan->images != NULL ? plan->images_musts[0] == '\0' : strcmp(plan->old_musts, plan->now_musts) == 0;
+}
+
 // Where the machine that is meant is the same, chips with other bytes have it in another allotment of states: they do.
 static void spare_chips(const struct difference *difference, struct chip_difference *chips)
 {
 	for (size_t index = 0; index < difference->chip_count; index++)
 		if (chips[index].fate != CHIP_STAYS && chips[index].fate != CHIP_BURN)
 			return;
-	for (size_t index = 0; index < difference->chip_count && !difference_found(difference); index++)
+	for (size_t index = 0; index < difference->plan_count; index++)
+		if (!does_same(&difference->plans[index]))
+			return;
+	for (size_t index = 0; index < difference->chip_count; index++)
 		if (chips[index].fate == CHIP_BURN)
 			chips[index].fate = CHIP_OTHER_BYTES;
 }

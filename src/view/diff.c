@@ -12,7 +12,7 @@ static bool plan_differs(const struct plan_difference *plan)
 {
 	if (plan->comparison == NULL || !plan->comparison->same_meaning)
 		return true;
-	return plan->images != NULL && plan->images_musts[0] != '\0';
+	return plan->images != NULL ? plan->images_musts[0] != '\0' : strcmp(plan->old_musts, plan->now_musts) != 0;
 }
 
 bool difference_found(const struct difference *difference)

@@ -22,6 +22,9 @@ struct diff_drawing {
 	struct svg *svg;
 	int64_t y;
 	struct text words;     // a sentence, made whole before it is drawn
+	bool unseen;           // what some images do cannot be told
+	const char *drawn[MOST_PAIRS]; // [drawn_count]: the line types of a pair of plans that are drawn
+	size_t drawn_count;
 	size_t pairs, left_out; // line types that are drawn, and that differ too
 };
 
@@ -106,12 +109,30 @@ static void draw_facts(struct diff_drawing *drawing, const struct plan_differenc
 			draw_fact(drawing, &plan->comparison->facts[index]);
 }
 
-// Changes that no line type's picture shows.
+// Changes that are of no line type.
 static void draw_general(struct diff_drawing *drawing, const struct comparison *comparison)
 {
 	size_t count = 0;
 	for (size_t index = 0; index < comparison->count; index++)
 		if (comparison->changes[index].line_count == 0)
+			draw_change(drawing, comparison, &comparison->changes[index], &count);
+	draw_more(drawing, count);
+}
+
+static bool is_drawn(const struct diff_drawing *drawing, const struct change *change)
+{
+	for (size_t index = 0; index < drawing->drawn_count; index++)
+		if (change_is_of_line(change, drawing->drawn[index]))
+			return true;
+	return false;
+}
+
+// Changes of line types that are not drawn, such as of what they hold.
+static void draw_others(struct diff_drawing *drawing, const struct comparison *comparison)
+{
+	size_t count = 0;
+	for (size_t index = 0; index < comparison->count; index++)
+		if (comparison->changes[index].line_count > 0 && !is_drawn(drawing, &comparison->changes[index]))
 			draw_change(drawing, comparison, &comparison->changes[index], &count);
 	draw_more(drawing, count);
 }
@@ -170,6 +191,7 @@ static bool draw_pair(struct diff_drawing *drawing, const struct drawn_pair *pai
 	const char *name = pair->comparison->now->plan->lines[pair->now_type].name;
 	size_t count = 0;
 	drawing->pairs++;
+	drawing->drawn[drawing->drawn_count++] = name;
 	drawing->y += PX(14);
 	put_pair_heading(&drawing->words, pair);
 	draw_words(drawing, "name", SVG_NAME_SIZE, HEADING);
@@ -235,7 +257,12 @@ static bool draw_plan(struct diff_drawing *drawing, const struct plan_difference
 	}
 	draw_facts(drawing, plan);
 	draw_general(drawing, plan->comparison);
-	return plan->unseen != NULL || draw_lines(drawing, plan->comparison);
+	drawing->unseen = drawing->unseen || plan->unseen != NULL;
+	drawing->drawn_count = 0;
+	if (plan->unseen == NULL && !draw_lines(drawing, plan->comparison))
+		return false;
+	draw_others(drawing, plan->comparison);
+	return true;
 }
 
 static void draw_foot(struct diff_drawing *drawing)
@@ -245,6 +272,8 @@ static void draw_foot(struct diff_drawing *drawing)
 		text_put_count(&drawing->words, drawing->left_out, "line type more differs, and is not drawn", "line types more differ, and are not drawn");
 		draw_words(drawing, "small", 13, SENTENCE);
 	}
+	if (drawing->pairs == 0 && drawing->unseen)
+		return;
 	text_put(&drawing->words, drawing->pairs > 0 ? "levels are those at the pins, to one scale of time; arrows go from where an edge was to where it is, rings are "
 	                                               "around edges that are new or gone"
 	                                             : "no line type that both frames have differs at the pins");

@@ -277,9 +277,23 @@ compare 0 --svg later.yaml images
 holds 'picture: images' xmllint --noout stdout
 # What was lifted is cut into lines elsewhere, and is the same timeline.
 "$SCANLATCH" lift later.yaml images >lifted.yaml
-compare 0 later.yaml lifted.yaml
-holds 'a lifted plan: the same timeline' grep -q ': same timeline, 4 changes in words only; ' unwrapped
+compare 1 later.yaml lifted.yaml
+holds 'a lifted plan: the same timeline' grep -q ': same timeline, 4 changes; ' unwrapped
 holds 'a lifted plan: cut elsewhere' grep -q '^  the frame is the same loop, begun at what was line 0, cell 2; its lines are cut elsewhere$' unwrapped
+says 'start: 0x0781, was 0x8000'
+# Without a start, images of either do for both: of frames that begin in the middle of a line, and with another block.
+for side in later lifted; do sed '/^  start:/d' $side.yaml >$side-free.yaml; done
+compare 0 later-free.yaml lifted-free.yaml
+holds 'a lifted plan without a start: words only' grep -q ': same timeline, 3 changes in words only; the images are not the same bytes$' unwrapped
+says 'no chip must be burned again, for either side'"'"'s do the same; but do not mix them: burn all that differ, or none'
+"$SCANLATCH" build later-free.yaml -o free >/dev/null
+compare 0 free lifted-free.yaml
+sed -E '/repeat: 18/d; s/^( +- \{ repeat: 3,   line: vertical.*)/\1\n  - { repeat: 18,  line: border }/' later-free.yaml >turned.yaml
+compare 1 later-free.yaml turned.yaml
+holds 'blocks in another order: another timeline' grep -q ': another timeline, 1 change; ' unwrapped
+says '18 lines of "border": block 4, was block 1'
+holds 'blocks in another order: the images do' grep -q '^  no chip must be burned again' unwrapped
+compare 0 free turned.yaml
 
 # JSON, against the text.
 compare 1 --json tide-board-60.yaml later.yaml
