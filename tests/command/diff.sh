@@ -294,6 +294,24 @@ holds 'blocks in another order: another timeline' grep -q ': another timeline, 1
 says '18 lines of "border": block 4, was block 1'
 holds 'blocks in another order: the images do' grep -q '^  no chip must be burned again' unwrapped
 compare 0 free turned.yaml
+# The same loop, one line of which is cut in two: what asks for something of every line may not be kept then, and that is a difference.
+cat >whole-lines.yaml <<'PLAN'
+scanlatch: 1
+name: jetty
+clock: { master: 315/22 MHz, cell: 6 ticks, subcarrier: master / 4, phase: every line }
+signals: { sync: { role: composite sync, active: low } }
+lines:
+  whole: { regions: [ { region: sync, cells: 8, assert: [sync] }, { region: picture, cells: 106 } ] }
+  start: { regions: [ { region: sync, cells: 8, assert: [sync] }, { region: picture, cells: 47 } ] }
+  end:   { regions: [ { region: picture, cells: 59 } ] }
+frame: [ { repeat: 4, line: whole } ]
+machine: { form: loop, state: 11 bits }
+chips: { part: 28C16 }
+PLAN
+sed 's/repeat: 4, line: whole }/repeat: 3, line: whole }, { repeat: 1, line: start }, { repeat: 1, line: end }/' whole-lines.yaml >cut-lines.yaml
+compare 1 whole-lines.yaml cut-lines.yaml
+holds 'a line cut in two: the same timeline' grep -q ': same timeline, ' unwrapped
+says 'musts: FAIL: colour, was all hold, the frame closes'
 
 # JSON, against the text.
 compare 1 --json tide-board-60.yaml later.yaml
