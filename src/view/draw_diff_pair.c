@@ -437,7 +437,7 @@ static void put_plot(const struct pair_drawing *drawing)
 
 static void draw_rulers(struct pair_drawing *drawing, int64_t *y)
 {
-	draw_line_rulers(&drawing->now, *y);
+	draw_line_rulers(&drawing->now, *y, drawing->pair->comparison->same_clock ? "cells" : "cells, new");
 	*y += LINE_RULERS_HEIGHT;
 	if (!drawing->to_scale) {
 		svg_text(drawing->svg, "small", LINE_LEFT, *y, ANCHOR_START, "not to one scale: the times of both do not fit");

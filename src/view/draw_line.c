@@ -203,7 +203,7 @@ static void draw_parts(struct line_drawing *drawing, const char *title)
 	draw_line_regions(drawing, HEAD_HEIGHT, "regions");
 	draw_line_traces(drawing, traces);
 	draw_line_composite(drawing, composite);
-	draw_line_rulers(drawing, rulers);
+	draw_line_rulers(drawing, rulers, "cells");
 	y = rulers + LINE_RULERS_HEIGHT;
 	draw_limits(drawing, y);
 	svg_close(svg);

@@ -64,7 +64,8 @@ void draw_line_regions(struct line_drawing *drawing, int64_t y, const char *labe
 void line_put_region_words(const struct line_drawing *drawing, struct text *words, size_t index);
 // Dotted lines down from the beginnings of regions.
 void draw_line_guides(struct line_drawing *drawing, int64_t from, int64_t to);
-void draw_line_rulers(struct line_drawing *drawing, int64_t y);
+// Rulers of cells, with what they are called, and of time.
+void draw_line_rulers(struct line_drawing *drawing, int64_t y, const char *cells);
 
 // Puts what a signal is: "blanking, active high"; "active low, 1 cell early".
 void line_put_signal_words(struct text *words, const struct signal *signal);

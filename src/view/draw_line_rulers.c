@@ -13,11 +13,11 @@ static void draw_mark(struct line_drawing *drawing, int64_t x, int64_t y, bool l
 		svg_text(drawing->svg, "small", x, y + PX(23), ANCHOR_MIDDLE, words);
 }
 
-static void draw_cell_ruler(struct line_drawing *drawing, int64_t y)
+static void draw_cell_ruler(struct line_drawing *drawing, int64_t y, const char *label)
 {
 	const int64_t cells = drawing->shape.cells, fine = ruler_step(cells, 200), coarse = ruler_step(cells, 16);
 	struct text words = {0};
-	svg_text(drawing->svg, "name", PX(16), y + PX(16), ANCHOR_START, "cells");
+	svg_text(drawing->svg, "name", PX(16), y + PX(16), ANCHOR_START, label);
 	svg_line(drawing->svg, "rule", LINE_LEFT, y, LINE_LEFT + drawing->width, y);
 	for (int64_t cell = 0; cell <= cells; cell += fine) {
 		words.length = 0;
@@ -52,10 +52,10 @@ static void draw_time_ruler(struct line_drawing *drawing, int64_t y)
 	svg_release(drawing->svg, &words);
 }
 
-void draw_line_rulers(struct line_drawing *drawing, int64_t y)
+void draw_line_rulers(struct line_drawing *drawing, int64_t y, const char *cells)
 {
 	svg_group(drawing->svg, "ruler");
-	draw_cell_ruler(drawing, y + PX(6));
+	draw_cell_ruler(drawing, y + PX(6), cells);
 	svg_close(drawing->svg);
 	svg_group(drawing->svg, "ruler");
 	draw_time_ruler(drawing, y + PX(44));
