@@ -194,8 +194,10 @@ static bool hold_states(struct lifting *lifting)
 static bool run(struct lifting *lifting, const struct image *images)
 {
 	struct lift *lift = lifting->lift;
-	if (!begin(lifting, images) || !lift_walk(lifting) || !lift_cut(lifting) || !lift_find_loops(lifting) || !lift_place(lifting) ||
-	    !lift_divide(lifting) || !lift_check_size(lifting) || !lift_name(lifting))
+	if (!begin(lifting, images) || !lift_walk(lifting) || !lift_find_loops(lifting) || !lift_cut(lifting))
+		return false;
+	lift_report_loops(lifting);
+	if (!lift_place(lifting) || !lift_divide(lifting) || !lift_check_size(lifting) || !lift_name(lifting))
 		return false;
 	if (!hold_states(lifting) || !lift_name_types(lifting))
 		return false;

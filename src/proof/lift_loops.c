@@ -53,9 +53,11 @@ static bool list_loops(struct lifting *lifting)
 	return true;
 }
 
-static void report_loops(struct lifting *lifting)
+void lift_report_loops(struct lifting *lifting)
 {
 	const struct lift *lift = lifting->lift;
+	if (lift->loop_count == 0)
+		return;
 	const unsigned digits = (lifting->at.bits + 3) / 4;
 	diagnose(lifting->diagnostics, RULE_LIFT_LOOPS, lifting->place,
 	         "the images have %llu loop%s besides the one of %u cells that power-up leads to; %llu states never come home",
@@ -75,13 +77,14 @@ bool lift_find_loops(struct lifting *lifting)
 	const struct ways *ways = ways_find(lifting->arena, lifting->machine, &lifting->wiring, lift->states, lift->cell_count);
 	if (ways == NULL)
 		return lift_memory(lifting);
-	if (ways->lost_states == 0)
+	lifting->comes_home = ways->lost_states == 0;
+	lifting->way_cells = ways->longest_cells;
+	if (lifting->comes_home)
 		return true;
 	if (!list_loops(lifting))
 		return false;
 	if (lift->loop_count == 0) // ways home that are too long to be told count as lost
 		return true;
 	lift->lost_states = ways->lost_states;
-	report_loops(lifting);
 	return true;
 }

@@ -11,10 +11,48 @@
 #define ODD_LINE_CELLS 8 // of shorter lines, double lengths and few lengths come by chance
 // The longest way from power-up into short lines: two of them, in which a line stage comes to step and a frame stage to its first line.
 #define SHORT_LEAD_IN_LINES 2
-// Of a loop's states, frames of short lines take one in so many at least.
+// Of a loop's states, frames of short lines take one in so many at least; and with other loops, as random bytes make them, in so many.
 #define SHORT_STATES 1024
+#define SHORT_STATES_LOOPS 16
+// Beside other loops, so many lines are meant all the same: long ones of a loop, short ones that two stages begin evenly.
+#define LONG_LINES_LOOPS 8
+#define EVEN_LINES_LOOPS 4
 
-// Says which chips are blank. False if none is.
+struct lengths {
+	uint64_t regular_cells, regular_ticks;
+	uint32_t shortest, longest;
+};
+
+// Whether a length is the normal one or its half, or, of lines that are not short, twice as long.
+static bool is_regular(const struct lifting *lifting, int64_t length, int64_t normal)
+{
+	return length == normal || 2 * length == normal || (length == 2 * normal && lifting->normal_cells >= ODD_LINE_CELLS);
+}
+
+static struct lengths measure(const struct lifting *lifting)
+{
+	struct lengths lengths = {.shortest = UINT32_MAX};
+	for (uint32_t index = 0; index < lifting->lift->line_count; index++) {
+		const struct lifted_line *line = &lifting->lines[index];
+		const int64_t ticks = lifted_line_ticks(lifting, line);
+		lengths.regular_cells += is_regular(lifting, line->cells, lifting->normal_cells) ? line->cells : 0;
+		lengths.regular_ticks += is_regular(lifting, ticks, lifting->normal_ticks) ? (uint64_t)ticks : 0;
+		lengths.shortest = line->cells < lengths.shortest ? line->cells : lengths.shortest;
+		lengths.longest = line->cells > lengths.longest ? line->cells : lengths.longest;
+	}
+	return lengths;
+}
+
+// Whether spare rows come home as they were made to: those of a loop at once, those of two stages as soon as the line ends that they are
+// in. Rows that chance made lead far, and most often into other loops too.
+static bool comes_home_at_once(const struct lifting *lifting)
+{
+	if (!lifting->comes_home || lifting->ends == NULL)
+		return lifting->comes_home && lifting->way_cells <= 1;
+	return lifting->lines != NULL && lift_starts_evenly(lifting) && lifting->way_cells <= measure(lifting).longest + 2;
+}
+
+// Says which chips may be blank: those whose signals and bits of the state never change. False if none is.
 static bool hint_blank(struct lifting *lifting)
 {
 	bool any = false;
@@ -26,7 +64,7 @@ static bool hint_blank(struct lifting *lifting)
 			same++;
 		if (same < image->length || (first != 0x00 && first != 0xFF))
 			continue;
-		diagnose_hint(lifting->diagnostics, "chip \"%s\" is blank: its %zu bytes are all 0x%02X", lifting->plan->chips[chip].label,
+		diagnose_hint(lifting->diagnostics, "chip \"%s\" may be blank: its %zu bytes are all 0x%02X", lifting->plan->chips[chip].label,
 		              image->length, first);
 		any = true;
 	}
@@ -38,7 +76,9 @@ static bool hint_images(struct lifting *lifting)
 {
 	if (hint_blank(lifting))
 		return false;
-	diagnose_hint(lifting->diagnostics, "are these the board's images? chips may be swapped, or wires and polarities others than it says");
+	const bool swapped = lifting->plan->chip_count > 1 && !comes_home_at_once(lifting);
+	diagnose_hint(lifting->diagnostics, "are these the board's images? %swires and polarities %sothers than it says",
+	              swapped ? "chips may be swapped, or " : "", swapped ? "" : "may be ");
 	if (lifting->ends == NULL)
 		diagnose_hint(lifting->diagnostics, "lines are cut at the leading edge of \"%s\"; --cut names another signal",
 		              lifting->plan->signals[lifting->cut_signal].name);
@@ -93,39 +133,18 @@ static bool check_sync(struct lifting *lifting)
 	return true;
 }
 
-// Whether a length is the normal one or its half, or, of lines that are not short, twice as long.
-static bool is_regular(const struct lifting *lifting, int64_t length, int64_t normal)
-{
-	return length == normal || 2 * length == normal || (length == 2 * normal && lifting->normal_cells >= ODD_LINE_CELLS);
-}
-
 // Half of the time at least.
 static bool is_enough(uint64_t part, uint64_t all)
 {
 	return 2 * part >= all;
 }
 
-struct lengths {
-	uint64_t regular_cells, regular_ticks;
-	uint32_t shortest, longest;
-};
-
-static struct lengths measure(const struct lifting *lifting)
+// Whether lengths are few, or, where rows are made, in some way like each other.
+static bool has_few_lengths(const struct lifting *lifting, const struct lengths *lengths)
 {
-	struct lengths lengths = {.shortest = UINT32_MAX};
-	for (uint32_t index = 0; index < lifting->lift->line_count; index++) {
-		const struct lifted_line *line = &lifting->lines[index];
-		const int64_t ticks = lifted_line_ticks(lifting, line);
-		lengths.regular_cells += is_regular(lifting, line->cells, lifting->normal_cells) ? line->cells : 0;
-		lengths.regular_ticks += is_regular(lifting, ticks, lifting->normal_ticks) ? (uint64_t)ticks : 0;
-		lengths.shortest = line->cells < lengths.shortest ? line->cells : lengths.shortest;
-		lengths.longest = line->cells > lengths.longest ? line->cells : lengths.longest;
-	}
-	return lengths;
-}
-
-static bool has_few_lengths(const struct lifting *lifting)
-{
+	if (comes_home_at_once(lifting))
+		return lifting->length_count <= FEW_LENGTHS || 2 * lifting->length_count <= lifting->lift->line_count ||
+		       lengths->longest <= 2 * lengths->shortest;
 	return lifting->normal_cells >= ODD_LINE_CELLS && lifting->length_count <= FEW_LENGTHS &&
 	       lifting->length_count * LINES_OF_LENGTH <= lifting->lift->line_count;
 }
@@ -136,7 +155,7 @@ static bool check_lengths(struct lifting *lifting)
 	const struct lengths lengths = measure(lifting);
 	struct text cut = {0};
 	if (is_enough(lengths.regular_cells, lift->cell_count) || is_enough(lengths.regular_ticks, (uint64_t)lift->tick_count) ||
-	    has_few_lengths(lifting))
+	    has_few_lengths(lifting, &lengths))
 		return true;
 	if (lifting->ends == NULL)
 		text_printf(&cut, "cut at \"%s\", ", lifting->plan->signals[lifting->cut_signal].name);
@@ -167,16 +186,39 @@ bool lift_starts_evenly(const struct lifting *lifting)
 	return true;
 }
 
-// Whether a frame of short lines looks made. Chance makes such too, of random bytes: but most often in sync for most of the time, at the
-// end of a long way from power-up, in few of many states, or with lines that begin anyhow.
+// Whether the only other loop is of erased rows: the state that is all ones.
+static bool loops_erased(const struct lifting *lifting)
+{
+	const struct lift *lift = lifting->lift;
+	return lift->loop_count == 1 && lift->loops[0].cells == 1 && lift->loops[0].state == low_bits(lifting->at.bits);
+}
+
+static bool is_alone(const struct lifting *lifting)
+{
+	return lifting->lift->loop_count == 0 || loops_erased(lifting);
+}
+
+// Whether a loop's frame takes enough of the states.
+static bool takes_enough(const struct lifting *lifting)
+{
+	return (uint64_t)lifting->lift->cell_count * (is_alone(lifting) ? SHORT_STATES : SHORT_STATES_LOOPS) >= (uint64_t)1 << lifting->at.bits;
+}
+
+// Whether a frame of few or short lines looks made. Chance makes such too, of random bytes: but most often beside other loops, in sync for
+// most of the time, at the end of a long way from power-up, in few of many states, or with lines that begin anyhow.
 static bool is_made(const struct lifting *lifting)
 {
 	const struct lift *lift = lifting->lift;
+	const bool stages = lifting->ends != NULL, alone = is_alone(lifting);
+	if (lifting->normal_cells == 1 || comes_home_at_once(lifting))
+		return lifting->normal_cells > 1;
 	if (lifting->normal_cells >= SHORT_LINE_CELLS)
-		return true;
-	if (lifting->normal_cells == 1 || lift->lead_in_cells > SHORT_LEAD_IN_LINES * lifting->normal_cells || is_mostly_sync(lifting))
+		return stages || alone || lift->line_count >= LONG_LINES_LOOPS || takes_enough(lifting);
+	if (lift->lead_in_cells > SHORT_LEAD_IN_LINES * lifting->normal_cells || is_mostly_sync(lifting))
 		return false;
-	return lifting->ends != NULL ? lift_starts_evenly(lifting) : (uint64_t)lift->cell_count * SHORT_STATES >= (uint64_t)1 << lifting->at.bits;
+	if (stages)
+		return lift_starts_evenly(lifting) && (alone || lift->line_count >= EVEN_LINES_LOOPS);
+	return takes_enough(lifting);
 }
 
 static bool check_short_lines(struct lifting *lifting)
@@ -185,7 +227,7 @@ static bool check_short_lines(struct lifting *lifting)
 	if (is_made(lifting))
 		return true;
 	diagnose(lifting->diagnostics, RULE_LIFT_RASTER, lifting->place,
-	         "no raster: the images' loop, %u cell%s from power-up, has %u line%s of %u cell%s in all, as short ones as random bytes make",
+	         "no raster: the images' loop, %u cell%s from power-up, has %u line%s of %u cell%s in all, as random bytes make them",
 	         lift->lead_in_cells, lift->lead_in_cells == 1 ? "" : "s", lift->line_count, lift->line_count == 1 ? "" : "s", lift->cell_count,
 	         lift->cell_count == 1 ? "" : "s");
 	return hint_images(lifting);

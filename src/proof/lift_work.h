@@ -44,6 +44,8 @@ struct lifting {
 	uint64_t stretch_mask;         // the stretch signal; 0 if there is none
 	int cut_signal;                // -1: there is none (line-frame)
 	uint8_t *ends;                 // [cell_count]: line-frame: the frame stage steps after this cell
+	bool comes_home;               // every state leads into the loop, after so many cells at most
+	uint32_t way_cells;
 	uint32_t home_cell;            // where the frame has to begin, if it is fixed; NO_INDEX
 	struct lifted_line *lines;     // [lift->line_count]
 	struct content *contents;
@@ -60,13 +62,15 @@ struct lifting {
 
 // Walks from power-up into the loop and around it: states, signals, ends of lines.
 bool lift_walk(struct lifting *lifting);
+// Looks for other loops, and how far it is to this one.
+bool lift_find_loops(struct lifting *lifting);
 // Cuts the loop into lines, and turns it so that the frame's first cell is cell 0.
 bool lift_cut(struct lifting *lifting);
 // Whether the lines are a raster's; and says that there are none (returns false).
 bool lift_check_raster(struct lifting *lifting);
 bool lift_report_no_lines(struct lifting *lifting);
-// Looks for other loops.
-bool lift_find_loops(struct lifting *lifting);
+// Reports the other loops, if there are any. Cannot fail.
+void lift_report_loops(struct lifting *lifting);
 // Sorts lines by what they show, into contents; and divides these into regions.
 bool lift_place(struct lifting *lifting);
 bool lift_divide(struct lifting *lifting);

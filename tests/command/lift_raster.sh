@@ -36,8 +36,8 @@ for plan in harbour-mouth mooring-board-counted tide-board-60; do
 	for byte in 377 000; do
 		rm -rf "$work/blank" && cp -r "$work/$plan" "$work/blank"
 		fill "$byte" "$work/blank"/*.bin
-		refused "$plan, all bytes $byte" "plans/$plan.yaml" "$work/blank" 'hint: chip "rom0" is blank: its [0-9]* bytes are all 0x'
-		same "$plan, all bytes $byte: each chip is named" "$(ls "$work/blank"/*.bin | wc -l)" "$(grep -c 'is blank' "$work/err")"
+		refused "$plan, all bytes $byte" "plans/$plan.yaml" "$work/blank" 'hint: chip "rom0" may be blank: its [0-9]* bytes are all 0x'
+		same "$plan, all bytes $byte: each chip is named" "$(ls "$work/blank"/*.bin | wc -l)" "$(grep -c 'may be blank' "$work/err")"
 	done
 	for seed in 1 2 3; do
 		rm -rf "$work/random" && cp -r "$work/$plan" "$work/random"
@@ -54,8 +54,8 @@ for chip in "$work/mooring-board-counted"/*.bin; do
 	for byte in 377 000; do
 		rm -rf "$work/blank" && cp -r "$work/mooring-board-counted" "$work/blank"
 		fill "$byte" "$work/blank/${chip##*/}"
-		refused "${chip##*/}, all bytes $byte" plans/mooring-board-counted.yaml "$work/blank" 'is blank'
-		same "${chip##*/}, all bytes $byte: the others are not" 1 "$(grep -c 'is blank' "$work/err")"
+		refused "${chip##*/}, all bytes $byte" plans/mooring-board-counted.yaml "$work/blank" 'may be blank'
+		same "${chip##*/}, all bytes $byte: the others are not" 1 "$(grep -c 'may be blank' "$work/err")"
 	done
 done
 cp -r "$work/tide-board-60" "$work/tide-board-60-swapped"
@@ -63,6 +63,90 @@ mv "$work/tide-board-60-swapped/tide-board-60.rom0.bin" "$work/first"
 mv "$work/tide-board-60-swapped/tide-board-60.rom2.bin" "$work/tide-board-60-swapped/tide-board-60.rom0.bin"
 mv "$work/first" "$work/tide-board-60-swapped/tide-board-60.rom2.bin"
 refused 'chips that are swapped' plans/tide-board-60.yaml "$work/tide-board-60-swapped" 'chips may be swapped'
+
+# Random bytes in loops of 4096 states, whose signals come and go by chance: no image of any seed is a raster.
+/usr/bin/python3 - "$work" 150 <<'MAKER'
+import os
+import random
+import sys
+for seed in range(int(sys.argv[2])):
+	os.mkdir(f"{sys.argv[1]}/noise-{seed}")
+	chance = random.Random(seed)
+	for chip in range(2):
+		with open(f"{sys.argv[1]}/noise-{seed}/made.rom{chip}.bin", "wb") as file:
+			file.write(chance.randbytes(1 << 12))
+MAKER
+cat >"$work/noise.yaml" <<'BOARD'
+scanlatch: 1
+name: made
+clock: { master: 14 MHz, dot: 1 tick, cell: 8 dots }
+signals:
+  sync: { role: composite sync, active: low }
+  blank: { role: blanking, active: high }
+machine: { form: loop, state: 12 bits }
+parts: { QUAYROM: { address pins: 12, data pins: 8, access: [120 ns] } }
+chips: { part: QUAYROM }
+BOARD
+lifted_noise=
+for seed in $(seq 0 149); do
+	"$SCANLATCH" lift "$work/noise.yaml" "$work/noise-$seed" >"$work/out" 2>"$work/err"
+	[ $? -eq 2 ] && grep -q '\[lift-raster\]$' "$work/err" || lifted_noise+=" $seed"
+done
+same 'random bytes of 4096 states: seeds that are lifted' '' "$lifted_noise"
+
+# ---- rasters that look odd, as plans are
+
+# odd NAME MACHINE LENGTHS SYNC: a plan of lines of these lengths, each shown twice but the first, of which so many cells are sync.
+odd() {
+	local length frame='' repeat=1 part=28C64
+	[[ $2 == *20* ]] && part=WIDEROM
+	{
+		echo "scanlatch: 1
+name: odd
+clock: { master: 8 MHz, dot: 1 tick, cell: 8 dots }
+signals: { sync: { role: composite sync, active: low } }
+lines:"
+		for length in $3; do
+			echo "  w$length: { regions: [ { region: sync, cells: $4, assert: [sync] }, { region: rest, cells: $((length - $4)) } ] }"
+			frame+="${frame:+, }{ repeat: $repeat, line: w$length }"
+			repeat=2
+		done
+		echo "frame: [ $frame ]"
+		echo "machine: { $2 }"
+		if [[ $2 == *line-frame* ]]; then
+			echo 'chips: { line: { part: 28C64 }, frame: { part: 28C64 } }'
+		else
+			echo "parts: { WIDEROM: { address pins: 20, data pins: 8, access: [120 ns] } }
+chips: { part: $part }"
+		fi
+	} >"$work/odd.yaml"
+	rm -rf "$work/odd"
+	"$SCANLATCH" build "$work/odd.yaml" -o "$work/odd" --format bin >"$work/out" 2>&1 || fail "$1: is built: $(cat "$work/out")"
+	"$SCANLATCH" lift "$work/odd.yaml" "$work/odd" >"$work/lifted.yaml" 2>"$work/err"
+	same "$1: lifted" '0 ' "$? $(cat "$work/err")"
+	"$SCANLATCH" diff "$work/odd" "$work/lifted.yaml" >"$work/out" 2>&1
+	same "$1: the images keep to it" 0 $?
+}
+odd 'lines of seven lengths' 'form: loop, state: 12 bits' '97 99 101 104 107 110 112' 9
+odd 'lines of seven lengths, in two stages' 'form: line-frame, line: { state: 7 bits }, frame: { state: 4 bits }' '97 99 101 104 107 110 112' 9
+odd 'short lines of many states' 'form: loop, state: 20 bits' '7 8' 1
+odd 'short lines, mostly sync' 'form: loop, state: 12 bits' '9 10' 6
+
+# Lines of random lengths are none, though the rows come home; and chips are not said to be swapped then.
+odd_lengths='3 7 11 17 25 34 46 59'
+{
+	sed '/^lines:/,$d' "$work/odd.yaml"
+	echo 'lines:'
+	for length in $odd_lengths; do
+		echo "  w$length: { regions: [ { region: sync, cells: 1, assert: [sync] }, { region: rest, cells: $((length - 1)) } ] }"
+	done
+	echo "frame: [ $(for length in $odd_lengths; do echo "{ repeat: 1, line: w$length },"; done | tr '\n' ' ' | sed 's/, $//') ]"
+	echo 'machine: { form: loop, state: 12 bits }
+chips: { part: 28C64 }'
+} >"$work/lengths.yaml"
+"$SCANLATCH" build "$work/lengths.yaml" -o "$work/lengths" --format bin >"$work/out" 2>&1 || fail 'random lengths are built'
+refused 'lines of random lengths' "$work/lengths.yaml" "$work/lengths" 'wires and polarities may be others'
+same 'lines of random lengths: chips are not swapped' 0 "$(grep -c 'swapped' "$work/err")"
 
 # ---- rasters that no plan has room for
 

@@ -327,12 +327,20 @@ static void no_rasters(void **test)
 	by_hand_destroy(hand);
 }
 
+// Two states of a hand that lead to each other, as random bytes make them: so the frame is not the only loop.
+static void add_loop(struct by_hand *hand, uint32_t state)
+{
+	burn(hand, state, state + 1, 0);
+	burn(hand, state + 1, state, 0);
+}
+
 // Lengths of which the commonest, 4 cells, takes a third of the time; all are multiples of its half, as short lines often are by chance.
 static void multiples_of_short_halves(void **test)
 {
 	(void)test;
 	struct by_hand *hand = board(6);
 	burn_loop(hand, "S--- S----- S--- S--------- S--- S-------", 0);
+	add_loop(hand, 60);
 	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
 	by_hand_destroy(hand);
 }
@@ -345,6 +353,7 @@ static void short_lines(void **test)
 	            "vertical sync: broad sync*3 serration*2; | 2 picture 1 vertical sync");
 	struct by_hand *hand = board(5);
 	burn_loop(hand, "SSS-- SSS-- S-..-", 0);
+	add_loop(hand, 20);
 	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
 	by_hand_destroy(hand);
 	hand = board(5);
@@ -360,7 +369,52 @@ static void short_lines(void **test)
 	by_hand_destroy(hand);
 	hand = board(14);
 	burn_loop(hand, "S-..- S-..- SSS--", 0);
+	add_loop(hand, 100);
 	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
+	by_hand_destroy(hand);
+}
+
+// Where every spare state leads home at once, lines of any kind were meant: short, mostly sync, of many states, of lengths that are few or
+// close together. One longer way, and chance may have made them.
+static void rows_that_come_home(void **test)
+{
+	(void)test;
+	static const char *const loops[] = {
+		"S-..- S-..- SSS--", "SSS-- SSS-- S-..-", "S- S-", "S--- S----- S--- S--------- S--- S-------",
+		"S--------- S---------- S----------- S------------ S------------- S--------------",
+	};
+	for (size_t loop = 0; loop < sizeof loops / sizeof *loops; loop++) {
+		struct by_hand *hand = board(17);
+		struct diagnostics *diagnostics = diagnostics_create();
+		burn_loop(hand, loops[loop], 0);
+		struct lift *lift = lift_images(&hand->plan, hand->images, plain, diagnostics);
+		assert_non_null(lift);
+		lift_destroy(lift);
+		diagnostics_destroy(diagnostics);
+		burn(hand, 200, 201, 0);
+		assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
+		by_hand_destroy(hand);
+	}
+}
+
+// Beside another loop few lines are none, long as they are; but beside one of erased rows alone they are.
+static void few_lines_beside_loops(void **test)
+{
+	(void)test;
+	struct by_hand *hand = board(12);
+	burn_loop(hand, "S--............- S--............- S------", 0);
+	add_loop(hand, 100);
+	assert_int_equal(refusal(hand, plain), RULE_LIFT_RASTER);
+	by_hand_destroy(hand);
+	hand = board(12);
+	burn_loop(hand, "S-..- S-..- SSS--", 0);
+	burn(hand, 0xFFF, 0xFFF, 0);
+	struct diagnostics *diagnostics = diagnostics_create();
+	struct lift *lift = lift_images(&hand->plan, hand->images, plain, diagnostics);
+	assert_non_null(lift);
+	assert_int_equal(lift->loop_count, 1);
+	lift_destroy(lift);
+	diagnostics_destroy(diagnostics);
 	by_hand_destroy(hand);
 }
 
@@ -445,6 +499,8 @@ int main(void)
 		cmocka_unit_test(no_rasters),
 		cmocka_unit_test(multiples_of_short_halves),
 		cmocka_unit_test(short_lines),
+		cmocka_unit_test(rows_that_come_home),
+		cmocka_unit_test(few_lines_beside_loops),
 		cmocka_unit_test(few_lengths),
 		cmocka_unit_test(other_loops),
 		cmocka_unit_test(laps_for_the_phase),

@@ -27,7 +27,7 @@ same 'every example makes the trip' "${#examples[@]}" "$(grep -c '^ok plans/' "$
 at_least $((count / 2)) '^ok '
 at_least $((count / 6)) '^ok .* held$'
 at_least $((count / 12)) '^ok .*/lines-'
-at_least $((count / 60)) '^refused .*/tight-.*: lift-raster$'
+at_least $((count / 150)) '^refused .*/tight-.*: lift-raster$'
 same 'lines that begin with a pulse are a raster' '' "$(grep '^refused .*/\(loop\|lines\)-' "$work/verdicts")"
 
 finish
