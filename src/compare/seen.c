@@ -69,7 +69,7 @@ static bool lay_out(struct seeing *seeing)
 static bool see(struct seeing *seeing)
 {
 	return seen_cut(seeing) && seen_turn(seeing) && seen_signals(seeing) && seen_pair(seeing) && seen_sort(seeing) &&
-	       seen_divide(seeing) && seen_hold(seeing) && count_blocks(seeing) && lay_out(seeing);
+	       seen_divide(seeing) && seen_blocks(seeing) && seen_hold(seeing) && count_blocks(seeing) && lay_out(seeing);
 }
 
 static uint64_t signal_mask(int signal)
