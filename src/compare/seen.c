@@ -122,7 +122,7 @@ static struct seen *try_to_see(struct sight *sight, enum seen_try try)
 		begin(&seeing);
 		good = see(&seeing);
 		sight->start = seeing.images.turned;
-		sight->other_signals = sight->other_signals || differ_in_signals(seeing.planned->plan, plan);
+		sight->other_signals = sight->other_signals || seeing.inverts || differ_in_signals(seeing.planned->plan, plan);
 	}
 	arena_destroy(scratch);
 	if (good)

@@ -30,18 +30,30 @@ static void count_duties(const uint64_t *asserted, uint32_t cells, size_t signal
 	}
 }
 
+static uint64_t distance(uint64_t left, uint64_t right)
+{
+	return left > right ? left - right : right - left;
+}
+
+// How far shares of circles are apart, of a whole that is the product of their lengths: as they are, or one the other way round.
+static uint64_t duties_apart(struct duty images, uint32_t cells, struct duty plan, uint32_t planned_cells, bool inverted)
+{
+	const uint64_t asserted = inverted ? cells - images.cells : images.cells;
+	return distance(asserted * planned_cells, (uint64_t)plan.cells * cells);
+}
+
 uint64_t seen_inverted(const struct seeing *seeing, const uint64_t *asserted, uint32_t cells)
 {
 	const struct timeline *planned = seeing->planned;
+	const uint32_t planned_cells = planned->cell_count;
 	struct duty plan[LIMIT_SIGNALS] = {{0, 0}}, images[LIMIT_SIGNALS] = {{0, 0}};
 	uint64_t inverted = 0;
-	if (cells != planned->cell_count)
-		return 0;
-	count_duties(planned->asserted, cells, planned->plan->signal_count, plan);
+	count_duties(planned->asserted, planned_cells, planned->plan->signal_count, plan);
 	count_duties(asserted, cells, planned->plan->signal_count, images);
 	for (size_t signal = 0; signal < planned->plan->signal_count; signal++)
-		if (images[signal].cells == cells - plan[signal].cells && images[signal].cells != plan[signal].cells &&
-		    images[signal].pulses == plan[signal].pulses && plan[signal].pulses > 0)
+		if (images[signal].pulses > 0 && plan[signal].pulses > 0 &&
+		    duties_apart(images[signal], cells, plan[signal], planned_cells, true) <
+		            duties_apart(images[signal], cells, plan[signal], planned_cells, false))
 			inverted |= (uint64_t)1 << signal;
 	return inverted;
 }
@@ -100,32 +112,85 @@ static bool copy_signals(struct seeing *seeing)
 	return true;
 }
 
-// Leaves a signal as it is read if it is not the other way round in nearly all cells.
-static void check_inverted(struct seeing *seeing, uint64_t mask)
+static void invert(struct circle *images, uint64_t mask)
 {
-	struct circle *images = &seeing->images;
-	uint32_t other = 0;
-	for (uint32_t cell = 0; cell < images->cells; cell++)
-		other += ((images->asserted[cell] ^ seeing->plan.asserted[cell]) & mask) != 0;
-	if (other <= images->cells / INVERTED_SHARE)
-		return;
-	seeing->inverted &= ~mask;
 	for (uint32_t cell = 0; cell < images->cells; cell++)
 		images->asserted[cell] ^= mask;
 }
 
-static void find_level_and_lead(struct seeing *seeing, size_t index, struct signal *signal)
+// How many segments of the images show a signal as some segment of the plan does. False after reporting.
+static bool count_known(struct seeing *seeing, uint64_t mask, size_t *known)
+{
+	const struct circle *plan = &seeing->plan, *images = &seeing->images;
+	uint8_t *planned = arena_alloc(seeing->arena, plan->count + images->count);
+	if (planned == NULL)
+		return seen_memory(seeing);
+	if (!seen_number(seeing, mask))
+		return false;
+	for (size_t index = 0; index < plan->count; index++)
+		planned[plan->segments[index].content] = 1;
+	*known = 0;
+	for (size_t index = 0; index < images->count; index++)
+		*known += planned[images->segments[index].content];
+	return true;
+}
+
+static bool differs_in_place(const struct seeing *seeing, uint64_t mask)
+{
+	const struct circle *images = &seeing->images;
+	uint32_t other = 0;
+	if (images->cells != seeing->plan.cells)
+		return true;
+	for (uint32_t cell = 0; cell < images->cells; cell++)
+		other += ((images->asserted[cell] ^ seeing->plan.asserted[cell]) & mask) != 0;
+	return other > images->cells / INVERTED_SHARE;
+}
+
+// Where lines do not tell: whether a signal of a frame of another length is on for about as long as planned, and as read would be far from that.
+static bool duty_tells(const struct seeing *seeing, size_t signal)
+{
+	const struct circle *images = &seeing->images, *plan = &seeing->plan;
+	struct duty seen[LIMIT_SIGNALS] = {{0, 0}}, planned[LIMIT_SIGNALS] = {{0, 0}};
+	count_duties(images->asserted, images->cells, signal + 1, seen);
+	count_duties(plan->asserted, plan->cells, signal + 1, planned);
+	const uint64_t inverted = duties_apart(seen[signal], images->cells, planned[signal], plan->cells, false);
+	const uint64_t as_read = duties_apart(seen[signal], images->cells, planned[signal], plan->cells, true);
+	return images->cells != plan->cells && as_read > (uint64_t)images->cells * plan->cells / 4 && inverted < as_read / 4;
+}
+
+// Leaves a signal as it is read if it is not the other way round in nearly all cells, nor so like the plan's in far more lines.
+static bool check_inverted(struct seeing *seeing, size_t signal)
+{
+	const uint64_t mask = (uint64_t)1 << signal;
+	size_t inverted, as_read;
+	if (!differs_in_place(seeing, mask))
+		return true;
+	if (!count_known(seeing, mask, &inverted))
+		return false;
+	invert(&seeing->images, mask);
+	if (!count_known(seeing, mask, &as_read))
+		return false;
+	invert(&seeing->images, mask);
+	if (inverted > 2 * as_read || (inverted == as_read && duty_tells(seeing, signal)))
+		return true;
+	seeing->inverted &= ~mask;
+	invert(&seeing->images, mask);
+	return true;
+}
+
+static bool find_level_and_lead(struct seeing *seeing, size_t index, struct signal *signal)
 {
 	struct circle *images = &seeing->images;
 	const uint64_t mask = (uint64_t)1 << index;
-	const bool may_lead = (mask & (seeing->cut | seeing->stretch | seeing->inverted)) == 0;
-	if ((seeing->inverted & mask) != 0)
-		check_inverted(seeing, mask);
+	const bool may_lead = images->cells == seeing->plan.cells && (mask & (seeing->cut | seeing->stretch | seeing->inverted)) == 0;
+	if ((seeing->inverted & mask) != 0 && !check_inverted(seeing, index))
+		return false;
 	const int lead = may_lead && leaves_others(seeing, mask, ~(mask | seeing->stretch)) ? find_lead(seeing, index) : 0;
 	signal->active_high ^= (seeing->inverted & mask) != 0;
 	signal->lead_cells += lead;
 	for (uint32_t cell = 0; lead != 0 && cell < images->cells; cell++)
 		images->asserted[cell] = (images->asserted[cell] & ~mask) | (seeing->plan.asserted[cell] & mask);
+	return true;
 }
 
 bool seen_signals(struct seeing *seeing)
@@ -133,8 +198,8 @@ bool seen_signals(struct seeing *seeing)
 	struct plan *plan = seeing->seen->plan;
 	if (!copy_signals(seeing))
 		return false;
-	const bool may_differ = seeing->images.cells == seeing->plan.cells && seeing->try != TRY_AS_READ;
-	for (size_t signal = 0; may_differ && signal < plan->signal_count; signal++)
-		find_level_and_lead(seeing, signal, &plan->signals[signal]);
+	for (size_t signal = 0; seeing->try != TRY_AS_READ && signal < plan->signal_count; signal++)
+		if (!find_level_and_lead(seeing, signal, &plan->signals[signal]))
+			return false;
 	return true;
 }

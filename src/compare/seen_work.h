@@ -69,6 +69,7 @@ struct seeing {
 	uint64_t stretch;          // the stretch signal; 0 if there is none
 	uint32_t laps;             // of the loop in the frame
 	uint64_t inverted;         // signals whose active level is the other one
+	bool inverts;              // some signal was taken for such a one
 	struct circle plan, images;
 	uint32_t *states;          // [images.cells]
 	size_t start_segment;      // of the images: where the frame begins; NONE if that is not known
@@ -100,7 +101,7 @@ bool seen_blocks(struct seeing *seeing);
 // Gives regions what they hold.
 bool seen_hold(struct seeing *seeing);
 
-// The signals that frames of one length show the other way round: asserted in as many cells as the plan has them not. Cannot fail.
+// The signals that may be the other way round: asserted about as long as the plan has them not. Cannot fail.
 uint64_t seen_inverted(const struct seeing *seeing, const uint64_t *asserted, uint32_t cells);
 
 // Whether a line may be so many lines after the first of its block, by what holds that count rows say. Cannot fail.

@@ -175,6 +175,10 @@ compare 1 old suggests.yaml
 says 'block 1, "dark": 3 lines, was 2 lines'
 says 'block 2, "lit": 2 lines, was 3 lines'
 never 'active high'
+edit suggests-frame.yaml longer.yaml 's/repeat: 2, line: dark/repeat: 5, line: dark/'
+compare 1 old longer.yaml
+says 'block 1, "dark": 5 lines, was 2 lines'
+never 'active high'
 build_old mooring-board-counted.yaml
 edit mooring-board-counted.yaml counted.yaml 's/(region: sync, +cells: )12/\111/'
 compare 1 old counted.yaml

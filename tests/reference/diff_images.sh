@@ -63,4 +63,10 @@ both_ways mooring-board-counted 's/(region: sync, +cells: )12/\111/'
 both_ways harbour-mouth 's/(repeat: )242/\1240/'
 both_ways pilot-station-625 's/active: low, lead: 1 cell/active: high, lead: 1 cell/'
 both_ways pilot-station-625 's/lead: 1 cell/lead: 2 cells/'
+# Another level, of frames of another length, and where the signal has another edge too.
+both_ways tide-board-50 's/(blank:.*active: )high/\1low/; s/repeat: 22/repeat: 30/'
+both_ways tide-board-50 's/(load:.*active: )low/\1high/; s/repeat: 37/repeat: 35/'
+both_ways tide-board-60 's/(sync:.*active: )low/\1high/; s/repeat: 25/repeat: 27/'
+both_ways tide-board-60 's/(blank:.*active: )high/\1low/; s/(region: front porch, +cells: )2(,      )/\13\2/'
+both_ways tide-board-50 's/(blank:.*active: )high/\1low/; s/(region: right border, cells: )9/\18/; s/repeat: 22/repeat: 30/'
 finish
