@@ -101,6 +101,132 @@ static int find_lead(const struct seeing *seeing, size_t signal)
 	return 0;
 }
 
+// A segment of the images, and the first of the plan in which all signals but one are the same.
+struct twin {
+	uint32_t seen, planned, cells;
+};
+
+// Twins in which the signal changes somewhere, without segments that the plan has as they are.
+struct twins {
+	struct twin *list;
+	size_t count;
+	bool some_as_planned;      // there are such segments
+};
+
+static bool changes_within(const uint64_t *asserted, uint32_t cells, uint64_t mask)
+{
+	uint32_t cell = 1;
+	while (cell < cells && ((asserted[cell] ^ asserted[cell - 1]) & mask) == 0)
+		cell++;
+	return cell < cells;
+}
+
+// What segments of the plan have which contents: the first, counted from 1. NULL after reporting.
+static uint32_t *list_planned(struct seeing *seeing, uint64_t mask)
+{
+	const struct circle *plan = &seeing->plan;
+	uint32_t *planned = arena_array(seeing->arena, plan->count + seeing->images.count, sizeof *planned);
+	if (planned == NULL)
+		seen_memory(seeing);
+	if (planned == NULL || !seen_number(seeing, mask))
+		return NULL;
+	for (size_t index = plan->count; index-- > 0;)
+		planned[plan->segments[index].content] = (uint32_t)index + 1;
+	return planned;
+}
+
+// False after reporting.
+static bool find_twins(struct seeing *seeing, uint64_t mask, struct twins *twins)
+{
+	const struct circle *plan = &seeing->plan, *images = &seeing->images;
+	bool *as_planned = arena_array(seeing->arena, images->count, sizeof *as_planned);
+	*twins = (struct twins){.list = arena_array(seeing->arena, images->count, sizeof *twins->list)};
+	if (as_planned == NULL || twins->list == NULL)
+		return seen_memory(seeing);
+	const uint32_t *planned = list_planned(seeing, UINT64_MAX);
+	for (size_t index = 0; planned != NULL && index < images->count; index++)
+		as_planned[index] = planned[images->segments[index].content] != 0;
+	planned = planned != NULL ? list_planned(seeing, ~(mask | seeing->stretch)) : NULL;
+	for (size_t index = 0; planned != NULL && index < images->count; index++) {
+		const struct segment *segment = &images->segments[index];
+		const bool changes = changes_within(images->asserted + segment->first, segment->cells, mask);
+		const uint32_t found = planned[segment->content];
+		const uint32_t first = found != 0 ? plan->segments[found - 1].first : 0;
+		twins->some_as_planned = twins->some_as_planned || (as_planned[index] && changes);
+		if (found != 0 && !as_planned[index] && (changes || changes_within(plan->asserted + first, segment->cells, mask)))
+			twins->list[twins->count++] = (struct twin){segment->first, first, segment->cells};
+	}
+	return planned != NULL;
+}
+
+// Whether the images show a signal so many cells before the plan does, as far as both are within the segment.
+static bool twin_leads_by(const struct seeing *seeing, struct twin twin, uint64_t mask, int lead)
+{
+	const uint32_t off = (uint32_t)(lead < 0 ? -lead : lead);
+	const uint64_t *seen = seeing->images.asserted + twin.seen + (lead < 0 ? off : 0);
+	const uint64_t *planned = seeing->plan.asserted + twin.planned + (lead > 0 ? off : 0);
+	uint32_t cell = 0;
+	while (cell + off < twin.cells && ((seen[cell] ^ planned[cell]) & mask) == 0)
+		cell++;
+	return cell + off >= twin.cells;
+}
+
+static size_t count_leading(const struct seeing *seeing, const struct twins *twins, uint64_t mask, int lead)
+{
+	size_t count = 0;
+	for (size_t index = 0; index < twins->count; index++)
+		count += twin_leads_by(seeing, twins->list[index], mask, lead);
+	return count;
+}
+
+// Whether a signal changes in some twin with others, which are the same there: one that changes alone is a region that was moved.
+static bool leaves_twins(const struct seeing *seeing, const struct twins *twins, uint64_t mask, uint64_t others)
+{
+	for (size_t index = 0; index < twins->count; index++) {
+		const uint64_t *planned = seeing->plan.asserted + twins->list[index].planned;
+		for (uint32_t cell = 1; cell < twins->list[index].cells; cell++) {
+			const uint64_t changed = planned[cell] ^ planned[cell - 1];
+			if ((changed & mask) != 0 && (changed & others) != 0)
+				return true;
+		}
+	}
+	return false;
+}
+
+// The nearest lead in most lines in which all other signals are as planned, if it is planned in none of these; otherwise 0. False after
+// reporting.
+static bool find_lead_of_twins(struct seeing *seeing, uint64_t mask, int *lead)
+{
+	const uint32_t quarter = seeing->planned->cell_count / seeing->planned->line_count / 4;
+	struct twins twins;
+	*lead = 0;
+	if (!find_twins(seeing, mask, &twins))
+		return false;
+	if (twins.count == 0 || twins.some_as_planned || count_leading(seeing, &twins, mask, 0) > 0 ||
+	    !leaves_twins(seeing, &twins, mask, ~(mask | seeing->stretch)))
+		return true;
+	for (int cells = 1; cells <= MOST_LEAD && (uint32_t)cells <= quarter && *lead == 0; cells++) {
+		if (2 * count_leading(seeing, &twins, mask, cells) > twins.count)
+			*lead = cells;
+		else if (2 * count_leading(seeing, &twins, mask, -cells) > twins.count)
+			*lead = -cells;
+	}
+	return true;
+}
+
+// Shows a signal so many cells later, around the frame. False when memory is out.
+static bool undo_lead(struct seeing *seeing, uint64_t mask, int lead)
+{
+	struct circle *images = &seeing->images;
+	const int64_t cells = images->cells;
+	uint64_t *before = turned_copy(seeing->arena, images->asserted, images->cells, sizeof *before, (size_t)((cells - lead % cells) % cells));
+	if (before == NULL)
+		return seen_memory(seeing);
+	for (uint32_t cell = 0; cell < images->cells; cell++)
+		images->asserted[cell] = (images->asserted[cell] & ~mask) | (before[cell] & mask);
+	return true;
+}
+
 static bool copy_signals(struct seeing *seeing)
 {
 	struct plan *plan = seeing->seen->plan;
@@ -180,17 +306,19 @@ static bool check_inverted(struct seeing *seeing, size_t signal)
 
 static bool find_level_and_lead(struct seeing *seeing, size_t index, struct signal *signal)
 {
-	struct circle *images = &seeing->images;
 	const uint64_t mask = (uint64_t)1 << index;
-	const bool may_lead = images->cells == seeing->plan.cells && (mask & (seeing->cut | seeing->stretch | seeing->inverted)) == 0;
+	const bool may_lead = (mask & (seeing->cut | seeing->stretch | seeing->inverted)) == 0;
+	const bool in_place = seeing->images.cells == seeing->plan.cells;
+	int lead = 0;
 	if ((seeing->inverted & mask) != 0 && !check_inverted(seeing, index))
 		return false;
-	const int lead = may_lead && leaves_others(seeing, mask, ~(mask | seeing->stretch)) ? find_lead(seeing, index) : 0;
+	if (may_lead && in_place && leaves_others(seeing, mask, ~(mask | seeing->stretch)))
+		lead = find_lead(seeing, index);
+	if (may_lead && lead == 0 && !find_lead_of_twins(seeing, mask, &lead))
+		return false;
 	signal->active_high ^= (seeing->inverted & mask) != 0;
 	signal->lead_cells += lead;
-	for (uint32_t cell = 0; lead != 0 && cell < images->cells; cell++)
-		images->asserted[cell] = (images->asserted[cell] & ~mask) | (seeing->plan.asserted[cell] & mask);
-	return true;
+	return lead == 0 || undo_lead(seeing, mask, lead);
 }
 
 bool seen_signals(struct seeing *seeing)
