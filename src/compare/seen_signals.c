@@ -5,6 +5,7 @@
 #include "compare/seen_work.h"
 
 #define MOST_LEAD 16 // cells that a lead is looked for in, and of a line at most a quarter
+#define LEFT_SHARE 8 // of the lines that tell a lead: more may not have another
 #define INVERTED_SHARE 16 // of the cells: more may not be as planned
 
 // How many cells of a circle a signal is asserted in, and how often it begins to be.
@@ -159,7 +160,7 @@ static bool find_twins(struct seeing *seeing, uint64_t mask, struct twins *twins
 	return planned != NULL;
 }
 
-// Whether the images show a signal so many cells before the plan does, as far as both are within the segment.
+// Whether the images show a signal so many cells before the plan does, as far as both are within the segment, where it must change.
 static bool twin_leads_by(const struct seeing *seeing, struct twin twin, uint64_t mask, int lead)
 {
 	const uint32_t off = (uint32_t)(lead < 0 ? -lead : lead);
@@ -168,7 +169,7 @@ static bool twin_leads_by(const struct seeing *seeing, struct twin twin, uint64_
 	uint32_t cell = 0;
 	while (cell + off < twin.cells && ((seen[cell] ^ planned[cell]) & mask) == 0)
 		cell++;
-	return cell + off >= twin.cells;
+	return cell + off >= twin.cells && changes_within(seen, cell, mask);
 }
 
 static size_t count_leading(const struct seeing *seeing, const struct twins *twins, uint64_t mask, int lead)
@@ -193,7 +194,7 @@ static bool leaves_twins(const struct seeing *seeing, const struct twins *twins,
 	return false;
 }
 
-// The nearest lead in most lines in which all other signals are as planned, if it is planned in none of these; otherwise 0. False after
+// The nearest lead in nearly all lines in which all other signals are as planned, if it is planned in none of these; otherwise 0. False after
 // reporting.
 static bool find_lead_of_twins(struct seeing *seeing, uint64_t mask, int *lead)
 {
@@ -206,9 +207,9 @@ static bool find_lead_of_twins(struct seeing *seeing, uint64_t mask, int *lead)
 	    !leaves_twins(seeing, &twins, mask, ~(mask | seeing->stretch)))
 		return true;
 	for (int cells = 1; cells <= MOST_LEAD && (uint32_t)cells <= quarter && *lead == 0; cells++) {
-		if (2 * count_leading(seeing, &twins, mask, cells) > twins.count)
+		if (twins.count - count_leading(seeing, &twins, mask, cells) <= twins.count / LEFT_SHARE)
 			*lead = cells;
-		else if (2 * count_leading(seeing, &twins, mask, -cells) > twins.count)
+		else if (twins.count - count_leading(seeing, &twins, mask, -cells) <= twins.count / LEFT_SHARE)
 			*lead = -cells;
 	}
 	return true;
@@ -307,11 +308,11 @@ static bool check_inverted(struct seeing *seeing, size_t signal)
 static bool find_level_and_lead(struct seeing *seeing, size_t index, struct signal *signal)
 {
 	const uint64_t mask = (uint64_t)1 << index;
-	const bool may_lead = (mask & (seeing->cut | seeing->stretch | seeing->inverted)) == 0;
 	const bool in_place = seeing->images.cells == seeing->plan.cells;
 	int lead = 0;
 	if ((seeing->inverted & mask) != 0 && !check_inverted(seeing, index))
 		return false;
+	const bool may_lead = (mask & (seeing->cut | seeing->stretch | seeing->inverted)) == 0;
 	if (may_lead && in_place && leaves_others(seeing, mask, ~(mask | seeing->stretch)))
 		lead = find_lead(seeing, index);
 	if (may_lead && lead == 0 && !find_lead_of_twins(seeing, mask, &lead))

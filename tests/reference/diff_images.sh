@@ -76,4 +76,8 @@ both_ways tide-board-60 's/lead: 1 cell/lead: 0 cells/; s/repeat: 25/repeat: 24/
 both_ways pilot-station-625 's/lead: 1 cell/lead: 2 cells/; s/repeat: 34/repeat: 37/'
 # A region that was moved, with all its signals, is no lead.
 both_ways mooring-board 's/(region: back porch, +cells: )6/\17/; s/(region: front porch, cells: )2/\11/; s/repeat: 33/repeat: 30/'
+# Nor is a signal that another region asserts too, before the one that it is in, or in lines that have it nowhere.
+both_ways pier-clock 's/(region: front porch, .*assert: \[)blank\]/\1blank, load]/'
+both_ways tide-board-60 's/(region: picture, +cells: 80, +assert: \[)load/\1sync, load/; s/(region: serration, .*assert: \[)blank/\1blank, load/'
+both_ways harbour-mouth 's/lead: 1 cell/lead: 2 cells/; s/(region: serration, time: 4.7 us, assert: \[)blank, /\1/'
 finish
