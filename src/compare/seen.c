@@ -69,7 +69,7 @@ static bool lay_out(struct seeing *seeing)
 static bool see(struct seeing *seeing)
 {
 	return seen_cut(seeing) && seen_turn(seeing) && seen_signals(seeing) && seen_pair(seeing) && seen_sort(seeing) &&
-	       seen_divide(seeing) && seen_hold(seeing) && count_blocks(seeing) && lay_out(seeing);
+	       seen_divide(seeing) && seen_blocks(seeing) && seen_hold(seeing) && count_blocks(seeing) && lay_out(seeing);
 }
 
 static uint64_t signal_mask(int signal)
@@ -122,7 +122,7 @@ static struct seen *try_to_see(struct sight *sight, enum seen_try try)
 		begin(&seeing);
 		good = see(&seeing);
 		sight->start = seeing.images.turned;
-		sight->other_signals = sight->other_signals || differ_in_signals(seeing.planned->plan, plan);
+		sight->other_signals = sight->other_signals || seeing.inverts || differ_in_signals(seeing.planned->plan, plan);
 	}
 	arena_destroy(scratch);
 	if (good)

@@ -198,6 +198,7 @@ static bool cut_images(struct seeing *seeing, uint32_t ahead)
 		states[cell] = lift->states[cell % lift->cell_count];
 	}
 	seeing->inverted = seeing->try != TRY_AS_READ ? seen_inverted(seeing, asserted, cells) : 0;
+	seeing->inverts = seeing->inverted != 0;
 	for (uint32_t cell = 0; cell < cells && seeing->inverted != 0; cell++)
 		asserted[cell] ^= seeing->inverted;
 	if (seeing->try == TRY_PLANNED_LINES && start == lift->cell_count)

@@ -1,4 +1,4 @@
-// Blocks of the images' frame, and what regions hold: what the plan says wherever the states of the images keep it.
+// What regions hold: what the plan says wherever the states of the images keep it.
 #include <string.h>
 
 #include "base/arena.h"
@@ -50,8 +50,7 @@ static struct spot spot_at(const struct seeing *seeing, size_t line, struct exte
 	return (struct spot){seeing->lines[line].first + extent.first, extent.first, extent.cells, (int64_t)line, row};
 }
 
-// Whether a line may be so many lines after the first of its block, by what holds that count rows say.
-static bool row_fits(const struct seeing *seeing, size_t line, uint32_t row)
+bool seen_row_fits(const struct seeing *seeing, size_t line, uint32_t row)
 {
 	const struct seen_type *type = &seeing->types[seeing->lines[line].type];
 	const struct line_type *seen = &seeing->seen->plan->lines[seeing->lines[line].type];
@@ -65,36 +64,6 @@ static bool row_fits(const struct seeing *seeing, size_t line, uint32_t row)
 			fits = !expression_uses(planned->holds[hold].expression, VARIABLE_ROW) || keeps(seeing, &spot, &planned->holds[hold], false);
 	}
 	return fits;
-}
-
-// Whether the plan has two lines that follow each other in different blocks.
-static bool plan_cuts(const struct seeing *seeing, size_t before, size_t after)
-{
-	const struct frame_line *lines = seeing->planned->lines;
-	return before != NONE && after != NONE && lines[before].block != lines[after].block;
-}
-
-// Whether a line that follows one of its type begins a block: as the plan has it, unless its row says otherwise.
-static bool begins_block(const struct seeing *seeing, size_t line, uint32_t next_row, bool rows_tell)
-{
-	const bool cut = plan_cuts(seeing, seeing->lines[line - 1].planned, seeing->lines[line].planned);
-	if (!rows_tell || row_fits(seeing, line, cut ? 0 : next_row))
-		return cut;
-	return row_fits(seeing, line, cut ? next_row : 0) ? !cut : cut;
-}
-
-// Rows tell nothing where already the first of some lines of a type does not hold what the plan says.
-static void cut_blocks(struct seeing *seeing)
-{
-	bool rows_tell = false;
-	for (size_t index = 0; index < seeing->line_count; index++) {
-		struct seen_line *line = &seeing->lines[index];
-		const bool goes_on = index > 0 && line[-1].type == line->type;
-		const uint32_t next = goes_on ? line[-1].row + 1 : 0;
-		line->begins_block = !goes_on || begins_block(seeing, index, next, rows_tell);
-		line->row = line->begins_block ? 0 : next;
-		rows_tell = goes_on ? rows_tell : row_fits(seeing, index, 0);
-	}
 }
 
 // How far a hold of the plan is kept in all lines of a type.
@@ -188,7 +157,6 @@ static bool hold_type(struct seeing *seeing, size_t index)
 
 bool seen_hold(struct seeing *seeing)
 {
-	cut_blocks(seeing);
 	for (size_t type = 0; type < seeing->type_count; type++)
 		if (!hold_type(seeing, type))
 			return false;

@@ -69,6 +69,7 @@ struct seeing {
 	uint64_t stretch;          // the stretch signal; 0 if there is none
 	uint32_t laps;             // of the loop in the frame
 	uint64_t inverted;         // signals whose active level is the other one
+	bool inverts;              // some signal was taken for such a one
 	struct circle plan, images;
 	uint32_t *states;          // [images.cells]
 	size_t start_segment;      // of the images: where the frame begins; NONE if that is not known
@@ -95,11 +96,16 @@ bool seen_pair(struct seeing *seeing);
 // Finds line types, and divides them into regions.
 bool seen_sort(struct seeing *seeing);
 bool seen_divide(struct seeing *seeing);
-// Divides the frame into blocks, and gives regions what they hold.
+// Divides the frame into blocks.
+bool seen_blocks(struct seeing *seeing);
+// Gives regions what they hold.
 bool seen_hold(struct seeing *seeing);
 
-// The signals that frames of one length show the other way round: asserted in as many cells as the plan has them not. Cannot fail.
+// The signals that may be the other way round: asserted about as long as the plan has them not. Cannot fail.
 uint64_t seen_inverted(const struct seeing *seeing, const uint64_t *asserted, uint32_t cells);
+
+// Whether a line may be so many lines after the first of its block, by what holds that count rows say. Cannot fail.
+bool seen_row_fits(const struct seeing *seeing, size_t line, uint32_t row);
 
 // The signals that are sync, of any kind. Cannot fail.
 uint64_t seen_sync(const struct seeing *seeing);

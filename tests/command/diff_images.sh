@@ -129,6 +129,33 @@ edit tide-board-60.yaml lead.yaml 's/lead: 1 cell/lead: 2 cells/'
 compare 1 old lead.yaml
 says 'signal load: lead 2 cells, was lead 1 cell'
 
+# Rows of text that hold the same nine times: where a block begins, only all of its rows together tell. A line of its own before them, a block
+# in two, and one that is cut elsewhere.
+edit tide-board-60.yaml rows.yaml 's/ scan: row%9,//; s/ scan: 14..11,//; s/state: 16 bits/state: 17 bits/'
+edit rows.yaml one.yaml 's/^(.*repeat: )216(, line: picture \}).*/\11\2\n&/'
+edit rows.yaml two.yaml 's/^(.*repeat: )216(, line: picture \}).*/\1100\2\n\1116\2/'
+edit rows.yaml other.yaml 's/^(.*repeat: )216(, line: picture \}).*/\180\2\n\1136\2/'
+build_old rows.yaml
+compare 1 old one.yaml
+says 'block 2, "picture": new, 1 line'
+holds 'a line of its own: nothing else' grep -q 'says, 1 change;' unwrapped
+compare 1 old two.yaml
+says 'block 2, "picture": 100 lines, was 216 lines'
+says 'block 3, "picture": new, 116 lines'
+holds 'a block in two: nothing else' grep -q 'says, 2 changes;' unwrapped
+build_old one.yaml
+compare 1 old rows.yaml
+says 'old block 2, "picture": gone, was 1 line'
+holds 'a line of its own is gone: nothing else' grep -q 'says, 1 change;' unwrapped
+build_old two.yaml
+compare 1 old rows.yaml
+says 'block 2, "picture": 216 lines, was 100 lines'
+says 'old block 3, "picture": gone, was 116 lines'
+compare 1 old other.yaml
+says 'block 2, "picture": 80 lines, was 100 lines'
+says 'block 3, "picture": 136 lines, was 116 lines'
+holds 'cut elsewhere: nothing else' grep -q 'says, 2 changes;' unwrapped
+
 # Two stages, with a table and with counters.
 build_old mooring-board.yaml
 edit mooring-board.yaml quay.yaml 's/(region: sync, +cells: )12/\113/; s/(region: back porch, +cells: )6/\15/; s/repeat: 33/repeat: 32/'
@@ -147,6 +174,10 @@ edit suggests-frame.yaml suggests.yaml 's/repeat: 2, line: dark/repeat: 3, line:
 compare 1 old suggests.yaml
 says 'block 1, "dark": 3 lines, was 2 lines'
 says 'block 2, "lit": 2 lines, was 3 lines'
+never 'active high'
+edit suggests-frame.yaml longer.yaml 's/repeat: 2, line: dark/repeat: 5, line: dark/'
+compare 1 old longer.yaml
+says 'block 1, "dark": 5 lines, was 2 lines'
 never 'active high'
 build_old mooring-board-counted.yaml
 edit mooring-board-counted.yaml counted.yaml 's/(region: sync, +cells: )12/\111/'

@@ -63,4 +63,21 @@ both_ways mooring-board-counted 's/(region: sync, +cells: )12/\111/'
 both_ways harbour-mouth 's/(repeat: )242/\1240/'
 both_ways pilot-station-625 's/active: low, lead: 1 cell/active: high, lead: 1 cell/'
 both_ways pilot-station-625 's/lead: 1 cell/lead: 2 cells/'
+# Another level, of frames of another length, and where the signal has another edge too.
+both_ways tide-board-50 's/(blank:.*active: )high/\1low/; s/repeat: 22/repeat: 30/'
+both_ways tide-board-50 's/(load:.*active: )low/\1high/; s/repeat: 37/repeat: 35/'
+both_ways tide-board-60 's/(sync:.*active: )low/\1high/; s/repeat: 25/repeat: 27/'
+both_ways tide-board-60 's/(blank:.*active: )high/\1low/; s/(region: front porch, +cells: )2(,      )/\13\2/'
+both_ways tide-board-50 's/(blank:.*active: )high/\1low/; s/(region: right border, cells: )9/\18/; s/repeat: 22/repeat: 30/'
+# Another lead, of frames of another length, and where other lines were edited.
+both_ways tide-board-60 's/lead: 1 cell/lead: 2 cells/; s/repeat: 18/repeat: 17/'
+both_ways tide-board-60 's/lead: 1 cell/lead: 3 cells/; s/repeat: 216/repeat: 207/'
+both_ways tide-board-60 's/lead: 1 cell/lead: 0 cells/; s/repeat: 25/repeat: 24/; s/(region: serration, +cells: )5/\16/'
+both_ways pilot-station-625 's/lead: 1 cell/lead: 2 cells/; s/repeat: 34/repeat: 37/'
+# A region that was moved, with all its signals, is no lead.
+both_ways mooring-board 's/(region: back porch, +cells: )6/\17/; s/(region: front porch, cells: )2/\11/; s/repeat: 33/repeat: 30/'
+# Nor is a signal that another region asserts too, before the one that it is in, or in lines that have it nowhere.
+both_ways pier-clock 's/(region: front porch, .*assert: \[)blank\]/\1blank, load]/'
+both_ways tide-board-60 's/(region: picture, +cells: 80, +assert: \[)load/\1sync, load/; s/(region: serration, .*assert: \[)blank/\1blank, load/'
+both_ways harbour-mouth 's/lead: 1 cell/lead: 2 cells/; s/(region: serration, time: 4.7 us, assert: \[)blank, /\1/'
 finish
