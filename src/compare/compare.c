@@ -8,13 +8,23 @@
 
 #define MOST_WORK 16000000u // pairs that alignments look at
 
-uint64_t map_signals(const struct comparing *comparing, uint64_t asserted)
+static uint64_t map_by(const size_t *signal_of, size_t signals, uint64_t asserted)
 {
 	uint64_t mapped = 0;
-	for (size_t index = 0; index < comparing->old->signal_count; index++)
-		if ((asserted >> index & 1) != 0 && comparing->signal_of[index] != NONE)
-			mapped |= (uint64_t)1 << comparing->signal_of[index];
+	for (size_t index = 0; index < signals; index++)
+		if ((asserted >> index & 1) != 0 && signal_of[index] != NONE)
+			mapped |= (uint64_t)1 << signal_of[index];
 	return mapped;
+}
+
+uint64_t map_signals(const struct comparing *comparing, uint64_t asserted)
+{
+	return map_by(comparing->signal_of, comparing->old->signal_count, asserted);
+}
+
+uint64_t comparison_map_signals(const struct comparison *comparison, uint64_t asserted)
+{
+	return map_by(comparison->signal_of, comparison->old->plan->signal_count, asserted);
 }
 
 static bool hold_is_same(const struct timeline *old, const struct timeline *now, uint32_t cell)

@@ -65,6 +65,9 @@ struct comparison {
 struct comparison *comparison_create(const struct timeline *old, const struct timeline *now);
 void comparison_destroy(struct comparison *comparison);
 
+// The old plan's signals in the new one's numbers; signals that are gone are left out. Cannot fail.
+uint64_t comparison_map_signals(const struct comparison *comparison, uint64_t asserted);
+
 // Puts what a change is of, and what became of it, in words: "edge between …" and "1 cell later (9 ticks, 0.629 us)". When memory is
 // out, out->failed is set.
 struct text;

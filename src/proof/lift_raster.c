@@ -8,7 +8,7 @@
 // So few lengths of lines, each for so many lines in the mean, are meant, if the commonest is no shorter than ODD_LINE_CELLS.
 #define FEW_LENGTHS 4
 #define LINES_OF_LENGTH 4
-#define ODD_LINE_CELLS 8 // of shorter lines, double lengths and few lengths come by chance
+#define ODD_LINE_CELLS 8 // of shorter lines, lengths twice as long and few lengths come by chance
 // The longest way from power-up into short lines: two of them, in which a line stage comes to step and a frame stage to its first line.
 #define SHORT_LEAD_IN_LINES 2
 // Of a loop's states, frames of short lines take one in so many at least; and with other loops, as random bytes make them, in so many.

@@ -151,20 +151,11 @@ static bool signals_are_same(const struct comparison *comparison)
 	return same;
 }
 
-static uint64_t map_signals(const struct comparison *comparison, uint64_t asserted)
-{
-	uint64_t mapped = 0;
-	for (size_t index = 0; index < comparison->old->plan->signal_count; index++)
-		if ((asserted >> index & 1) != 0 && comparison->signal_of[index] != NONE)
-			mapped |= (uint64_t)1 << comparison->signal_of[index];
-	return mapped;
-}
-
 static bool is_same(const struct comparison *comparison, const struct laid_line *old, const struct laid_line *now)
 {
 	bool same = comparison->same_clock && old->cells == now->cells && old->ticks == now->ticks;
 	for (uint32_t cell = 0; same && cell < old->cells; cell++)
-		same = map_signals(comparison, old->asserted[cell]) == now->asserted[cell];
+		same = comparison_map_signals(comparison, old->asserted[cell]) == now->asserted[cell];
 	return same;
 }
 
